@@ -1,0 +1,40 @@
+"""The command `setupcheck`: one file a command, errors caught once, here."""
+
+from __future__ import annotations
+
+import sys
+
+import typer
+
+from setupcheck.cli import review, rules, working
+from setupcheck.errors import SetupcheckError
+
+app = typer.Typer(
+    name="setupcheck", rich_markup_mode=None, no_args_is_help=True, add_completion=True, pretty_exceptions_enable=False,
+    help="Check the setups of one precise part before the first chip: what every holding adds, and whether it is too much.",
+    epilog="Exit: 0 pass, 1 warn or open, 2 wrong use or unreadable job, 3 fail.",
+)
+app.command("review")(review.command)
+app.command("working")(working.command)
+app.command("rules")(rules.command)
+
+
+@app.callback(invoke_without_command=True)
+def options(version: bool = typer.Option(False, "--version", help="Print the version and stop.")) -> None:
+    if version:
+        from setupcheck import __version__
+
+        typer.echo(f"setupcheck {__version__}")
+        raise typer.Exit()
+
+
+def run() -> None:
+    """Entry point of the console script."""
+    try:
+        app()
+    except SetupcheckError as wrong:
+        print(wrong, file=sys.stderr)
+        sys.exit(2)
+    except BrokenPipeError:
+        sys.stderr.close()
+        sys.exit(1)

@@ -1,0 +1,19 @@
+"""`setupcheck rules [ID]`: the rule book."""
+
+from __future__ import annotations
+
+import sys
+from typing import Annotated
+
+import typer
+
+
+def command(rule: Annotated[str | None, typer.Argument(metavar="[ID]", help="Such as STACK-001.", show_default=False)] = None) -> None:
+    """List the rules, or show one with its reason and sources.
+
+    Example: setupcheck rules DATUM-001
+    """
+    from setupcheck.flow import rules
+    from setupcheck.rulebook import describe
+
+    sys.stdout.write(describe(rules(), rule).rstrip() + "\n")

@@ -1,0 +1,26 @@
+"""`setupcheck working JOB QUANTITY[@INSTANCE]`: how a number came about."""
+
+from __future__ import annotations
+
+import sys
+from pathlib import Path
+from typing import Annotated
+
+import typer
+
+
+def command(
+    job: Annotated[Path, typer.Argument(metavar="JOB", help="Job file (YAML).", show_default=False)],
+    quantity: Annotated[str, typer.Argument(metavar="QUANTITY[@INSTANCE]", help="Such as stack.worst or datum.state@30/centre.",
+                                            show_default=False)],
+) -> None:
+    """Show formula, inputs with their lines, source and evidence of one number.
+
+    Example: setupcheck working jobs/index-plate.yaml stack.worst@position
+    """
+    from setupcheck.flow import load_job, prepare
+    from setupcheck.report.working import as_working
+
+    loaded = load_job(job)
+    _, book = prepare(loaded)
+    sys.stdout.write(as_working(loaded, book, quantity))

@@ -1,0 +1,145 @@
+"""The one tree of exceptions, and how a problem in a file is shown: place, line, what to write. Leaf module."""
+
+from __future__ import annotations
+
+import unicodedata
+from collections.abc import Iterable, Sequence
+from dataclasses import dataclass
+
+MOST_SHOWN = 50  # problems printed of one file; our screening choice: nobody repairs more in one go
+WIDEST_LINE = 100  # characters of a source line that are shown; our screening choice
+_BEFORE_CARET = 30  # characters kept before the caret when a long line is cut; our screening choice
+
+_UNSHOWABLE = frozenset({"Cc", "Cf", "Cs", "Zl", "Zp"})  # controls, escapes, text-direction marks, line separators
+
+
+class SetupcheckError(Exception):
+    """Everything this package refuses on purpose. Any other exception is a bug and keeps its traceback."""
+
+
+@dataclass(frozen=True, slots=True)
+class Problem:
+    """One thing wrong in one place of a file.
+
+    path           dotted place in the job, `setups.30.hold.centre.clearance`; "" when there is none
+    line, column   counted from 1; line 0: the problem has no place in the text (a missing file)
+    length         characters to underline on that line, at least one is
+    problem, hint  what is wrong; what to write. No full stop at the end of the problem
+    """
+
+    path: str
+    line: int
+    column: int
+    length: int
+    problem: str
+    hint: str
+
+
+class JobError(SetupcheckError):
+    """A job file that cannot be read, with every problem found in it.
+
+    `str()` gives the whole text for the planner, sorted by line and column, repeated problems once:
+
+        jobs/rotator.yaml:23:18  setups.30.hold.centre.clearance
+            23 |       clearance: 2,5 um
+               |                  ^^^^^^
+          '2,5 um' is not a length. Write a point for the decimal: 2.5 um
+    """
+
+    def __init__(self, file: str, lines: Sequence[str], problems: Iterable[Problem]) -> None:
+        found = merged(problems)
+        if not found:
+            raise ValueError("a JobError needs at least one problem")
+        super().__init__(file, lines, found)  # the arguments again: the error must survive pickling between processes
+        self.file = file
+        self.lines = lines
+        self.problems = found
+
+    def __str__(self) -> str:
+        shown = [_shown(problem, self.file, self.lines) for problem in self.problems[:MOST_SHOWN]]
+        left = len(self.problems) - len(shown)
+        if left:
+            shown.append(f"and {left} more")
+        return "\n".join(shown)
+
+
+class RuleBookError(SetupcheckError):
+    """A rule file, house file or waiver that cannot be used: `rules/heat.yaml:12  problem. hint`."""
+
+    def __init__(self, file: str, line: int, problem: str, hint: str = "") -> None:
+        super().__init__(file, line, problem, hint)
+        self.file = file
+        self.line = line
+        self.problem = problem
+        self.hint = hint
+
+    def __str__(self) -> str:
+        place = f"{printable(self.file)}:{self.line}  " if self.line else f"{printable(self.file)}: "
+        return place + _sentence(self.problem, self.hint)
+
+
+def merged(problems: Iterable[Problem]) -> tuple[Problem, ...]:
+    """Problems sorted by line and column; one that says the same about the same place is kept once."""
+    first: dict[tuple[str, int, int, str], Problem] = {}
+    for problem in problems:
+        path = "" if problem.line else problem.path  # two paths of a model may lead to one place of the text
+        first.setdefault((path, problem.line, problem.column, problem.problem), problem)
+    return tuple(sorted(first.values(), key=lambda p: (p.line, p.column)))
+
+
+def printable(text: str) -> str:
+    """Text with everything a terminal would obey (escapes, controls, text direction) replaced; a tab becomes a space.
+
+    >>> printable("a" + chr(9) + "b" + chr(27) + "[31m")
+    'a b\ufffd[31m'
+    """
+    if text.isascii() and text.isprintable():
+        return text
+    return "".join(_printable_character(character) for character in text)
+
+
+def _printable_character(character: str) -> str:
+    if character == "\t":
+        return " "
+    return "\ufffd" if unicodedata.category(character) in _UNSHOWABLE else character
+
+
+def _sentence(problem: str, hint: str) -> str:
+    text = problem.rstrip(" .") + "."
+    return printable(f"{text} {hint}" if hint else text)
+
+
+def _shown(problem: Problem, file: str, lines: Sequence[str]) -> str:
+    says = _sentence(problem.problem, problem.hint)
+    name, path = printable(file), printable(problem.path)
+    if problem.line < 1:
+        return f"{name}  {path}: {says}" if path else f"{name}: {says}"
+    head = f"{name}:{problem.line}:{problem.column}  {path}".rstrip()
+    if problem.line > len(lines):
+        return f"{head}\n  {says}"
+    text, start, length = _window(lines[problem.line - 1].rstrip("\r\n"), problem.column - 1, problem.length)
+    number = f"{problem.line:>6}"
+    blank = " " * len(number)
+    under = " " * _width(text[:start]) + "^" * max(1, _width(text[start : start + length]))
+    return f"{head}\n{number} | {text}\n{blank} | {under}\n  {says}"
+
+
+def _window(line: str, start: int, length: int) -> tuple[str, int, int]:
+    """The part of a line that is shown, and where the marked text stands in it (characters)."""
+    start = min(max(start, 0), len(line))
+    length = min(length, len(line) - start)
+    first = max(0, start - _BEFORE_CARET) if len(line) > WIDEST_LINE else 0
+    text = printable(line[first : first + WIDEST_LINE])
+    front = "\u2026" if first else ""
+    back = "\u2026" if first + WIDEST_LINE < len(line) else ""
+    return front + text + back, start - first + len(front), min(length, WIDEST_LINE - (start - first))
+
+
+def _width(text: str) -> int:
+    """Cells that a text takes in a terminal: wide letters two, combining marks none."""
+    if text.isascii():
+        return len(text)
+    return sum(
+        0 if unicodedata.combining(character) else 2 if unicodedata.east_asian_width(character) in "WF" else 1
+        for character in text
+    )

@@ -1,0 +1,114 @@
+"""From a job file to its review: read, walk the route, judge every number by the rule book. The public way in."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import dataclass, field
+from functools import cache
+from pathlib import Path
+
+from setupcheck.jobfile.reading import LoadedJob, read_job
+from setupcheck.quantities.book import Book, Known, Scope
+from setupcheck.quantities.facts import UnknownFact, facts_of
+from setupcheck.quantities.gates import Change, Gate, gates, remedy
+from setupcheck.quantities.judged import Result
+from setupcheck.quantities.route import walk
+from setupcheck.quantities.scopes import scopes
+from setupcheck.quantities.shop import Floor
+from setupcheck.quantities.tables import TABLES
+from setupcheck.rulebook import (
+    Answer,
+    Evaluation,
+    Fact,
+    House,
+    RuleBook,
+    Unknown,
+    Verdict,
+    Waiver,
+    evaluate,
+    load_house,
+    load_rulebook,
+    verdict,
+)
+from setupcheck.shipped import shipped
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class Review:
+    """Everything one review found.
+
+    results   combined stacks by instance, those that could be computed;  remedies likewise, for stacks outside their limit
+    """
+
+    loaded: LoadedJob
+    floor: Floor
+    book: Book
+    rulebook: RuleBook
+    house: House | None
+    evaluation: Evaluation
+    verdict: Verdict
+    results: Mapping[str, Result]
+    gates: tuple[Gate, ...]
+    remedies: Mapping[str, list[Change]] = field(default_factory=dict)
+    on: str | None = None
+
+
+@cache
+def rules() -> RuleBook:
+    """The shipped rule book, read once."""
+    return load_rulebook(shipped("rules"), quantities={q.name: q for q in TABLES})
+
+
+def load_job(path: str | Path) -> LoadedJob:
+    """Read and check a job file.
+
+    Raises: JobError with every problem of the file, each with its line.
+    """
+    return read_job(path)
+
+
+def review(job: LoadedJob | str | Path, *, house: str | Path | None = None, on: str | None = None) -> Review:
+    """Judge a job.
+
+    house  file of a shop's own limits;  on  the day it is judged (ISO date), which waivers with an end need
+    Raises: JobError, RuleBookError.
+    """
+    loaded = job if isinstance(job, LoadedJob) else load_job(job)
+    floor, book = prepare(loaded)
+    book_of_rules = rules()
+    own = load_house(Path(house), book_of_rules, quantities=book.quantities) if house is not None else None
+
+    def facts(scope: Scope, name: str) -> Fact:
+        found = facts_of(floor, scope, name)
+        return Unknown(found.path) if isinstance(found, UnknownFact) else found
+
+    found = evaluate(book_of_rules, book, facts, house=own, waivers=_waivers(loaded), answers=_answers(loaded), on=on)
+    results = stack_results(book)
+    return Review(loaded, floor, book, book_of_rules, own, found, verdict(found.findings, found.cautions), results,
+                  tuple(gates(book.scopes, list(results.values()))),
+                  {key: changes for key, r in results.items() if (changes := remedy(loaded, r))}, on)
+
+
+def prepare(loaded: LoadedJob) -> tuple[Floor, Book]:
+    """The walked route and its book of quantities.
+
+    Raises: JobError for what shows only along the route.
+    """
+    floor = walk(loaded)
+    return floor, Book(TABLES, scopes(floor), inches=loaded.job.units == "in")
+
+
+def stack_results(book: Book) -> dict[str, Result]:
+    """The combined stacks by instance, those that have a value."""
+    found = {scope.key: book.get("stack.combined", scope) for scope in book.instances("stack")}
+    return {key: a.value for key, a in found.items() if isinstance(a, Known) and isinstance(a.value, Result)}
+
+
+def _waivers(loaded: LoadedJob) -> list[Waiver]:
+    return [Waiver(w.rule, w.at, w.reason, w.until or "", f"waive.{i}", loaded.line(f"waive.{i}"))
+            for i, w in enumerate(loaded.job.waive)]
+
+
+def _answers(loaded: LoadedJob) -> list[Answer]:
+    return [Answer(c.caution, c.op, c.by, c.note or "", f"checked.{i}", loaded.line(f"checked.{i}"))
+            for i, c in enumerate(loaded.job.checked)]

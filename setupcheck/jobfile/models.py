@@ -1,0 +1,350 @@
+"""The job models: parts, machines, cutters, worm and mesh, place, requirements. Sizes mm, angles rad, degC, N, s.
+
+Models that describe a setup stand in `setups.py`. All are frozen and refuse unknown keys.
+"""
+
+from __future__ import annotations
+
+from typing import Annotated, Literal
+
+from pydantic import BaseModel, BeforeValidator, ConfigDict, Field, ValidationInfo, WithJsonSchema, model_validator
+
+from setupcheck import notation
+from setupcheck.jobfile.types import (
+    AngleBound,
+    Angle,
+    Bound,
+    Fraction,
+    Length,
+    Limit,
+    Limits,
+    Reading,
+    Size,
+    Speed,
+    Temperature,
+)
+
+
+class Shop(BaseModel):
+    """A record of the job file."""
+
+    model_config = ConfigDict(extra="forbid", frozen=True, coerce_numbers_to_str=True)
+
+
+class Dimension(Shop):
+    """A size with its limits or its measured value: `32 H6`, `32.041 ±0.003`, `{measured: 2.31 mm, uncertainty: 4 um}`.
+
+    lower, upper  deviations from `nominal` [mm]; `uncertainty` is expanded, k = 2
+    """
+
+    nominal: Length | None = None
+    lower: Length | None = None
+    upper: Length | None = None
+    fit: str | None = None
+    measured: Length | None = None
+    uncertainty: Bound | None = None
+    at: str | None = None
+
+    @model_validator(mode="before")
+    @classmethod
+    def a_plain_value_is_a_size_with_limits(cls, given: object, info: ValidationInfo) -> object:
+        if isinstance(given, str | int | float) and not isinstance(given, bool):
+            units = (info.context or {}).get("units", "mm")
+            read = notation.size(given, units=units)
+            shown = {"nominal": read.nominal, "lower": read.lower, "upper": read.upper}
+            return {**{k: f"{v!r} mm" for k, v in shown.items() if v is not None}, **({"fit": read.fit} if read.fit else {})}
+        return given
+
+    @model_validator(mode="after")
+    def something_is_stated(self) -> Dimension:
+        if self.nominal is None and self.measured is None:
+            raise ValueError("this size has neither a nominal nor a measured value. Write a size, or measured: 32.04 mm")
+        return self
+
+    @property
+    def value(self) -> float:
+        """The measured size, else the nominal one [mm]."""
+        if self.measured is not None:
+            return self.measured
+        assert self.nominal is not None
+        return self.nominal
+
+
+def _positive(given: Dimension) -> Dimension:
+    if given.value <= 0.0:
+        raise ValueError(f"{given.value:g} mm is not a diameter. Write a size above zero")
+    return given
+
+
+class Deviation(Shop):
+    """An error entry that holds plan and measurement together.
+
+    at_most      planned bound [mm]; a plain value means this one
+    measured     as found [mm]; `uncertainty` is expanded (k = 2), `standard_uncertainty` is the other key
+    high_at      where the metal comes nearest the probe: `tooth 14`, `90 deg`, `mark`, `jaw 2`, a surface's name
+    device       what held or measured it; alone it takes its typical value
+    mark         `kept`: the part goes back the same way round in the same device, so it is one cause in several setups
+    """
+
+    at_most: Bound | None = None
+    measured: Reading | None = None
+    uncertainty: Bound | None = None
+    standard_uncertainty: Bound | None = None
+    high_at: str | None = None
+    device: str | None = None
+    mark: Literal["kept", "lost"] | None = None
+
+    @model_validator(mode="before")
+    @classmethod
+    def a_plain_value_is_a_bound(cls, given: object) -> object:
+        return {"at_most": given} if isinstance(given, str | int | float) and not isinstance(given, bool) else given
+
+    @model_validator(mode="after")
+    def one_uncertainty(self) -> Deviation:
+        if self.uncertainty is not None and self.standard_uncertainty is not None:
+            raise ValueError("uncertainty and standard_uncertainty say the same thing twice. Keep one of them")
+        if self.measured is not None and self.measured < 0.0:
+            raise ValueError("a run-out reading is never negative. Write the full indicator movement")
+        if self.measured is None and self.at_most is None and self.device is None:
+            raise ValueError("this error states nothing. Write at_most: 10 um, or measured: 6 um, or a device")
+        return self
+
+    @property
+    def u(self) -> float:
+        """Standard uncertainty of the measured value [mm]; 0 where none is stated."""
+        if self.standard_uncertainty is not None:
+            return self.standard_uncertainty
+        return 0.0 if self.uncertainty is None else self.uncertainty / 2.0
+
+
+_DEVIATION_SCHEMA = {"anyOf": [{"type": "string"}, {"$ref": "#/$defs/Deviation"}]}
+_SIZE_SCHEMA = {"anyOf": [{"type": ["string", "number"]}, {"$ref": "#/$defs/Dimension"}]}
+Error = Annotated[Deviation, WithJsonSchema(_DEVIATION_SCHEMA)]
+Dim = Annotated[Dimension, WithJsonSchema(_SIZE_SCHEMA)]
+
+
+# -- surfaces of a part ----------------------------------------------------------------------------------------------
+
+Facing = Annotated[Literal[1, -1], BeforeValidator(lambda g: {"+z": 1, "-z": -1}.get(g, g) if isinstance(g, str) else g),
+                   WithJsonSchema({"enum": ["+z", "-z"]})]
+
+
+class Round(Shop):
+    """A surface of revolution with a length: cylinder, bore, taper, thread."""
+
+    kind: Literal["cylinder", "bore", "taper", "thread"]
+    diameter: Dim
+    low: Length = Field(alias="from")
+    high: Length = Field(alias="to")
+    hole: Size | None = None
+    roughness: str | None = None
+    made: Literal["stock"] | None = None
+    pitch: Size | None = None
+
+    @model_validator(mode="after")
+    def it_has_a_length(self) -> Round:
+        _positive(self.diameter)
+        if self.high <= self.low:
+            raise ValueError(f"it runs from {self.low:g} to {self.high:g} mm. Write from: below to:")
+        if self.hole is not None and self.hole >= self.diameter.value:
+            raise ValueError(f"a hole of {self.hole:g} mm leaves nothing of {self.diameter.value:g} mm. Write a smaller hole")
+        return self
+
+
+class Flat(Shop):
+    """A face square to the axis, or a centre hole in an end."""
+
+    kind: Literal["face", "centre"]
+    at: Length
+    facing: Facing
+    diameter: Size | None = None
+    hole: Size | None = None
+    roughness: str | None = None
+    made: Literal["stock"] | None = None
+
+
+class Throat(Shop):
+    """The hollow of a worm wheel's rim: `diameter` at the mid-plane `at`, hollow `radius`."""
+
+    kind: Literal["throat"]
+    diameter: Size
+    radius: Size
+    at: Length
+    made: Literal["stock"] | None = None
+
+
+class Toothing(Shop):
+    """A ring of teeth or gaps: `on_circle` is the pitch circle, `at` the mid-plane."""
+
+    kind: Literal["teeth"]
+    count: int = Field(ge=1, le=1000)
+    on_circle: Size
+    at: Length
+    width: Size | None = None
+    pressure_angle: Angle | None = None
+    module: Size | None = None
+    made: Literal["stock"] | None = None
+
+
+class Pattern(Shop):
+    """Holes on a circle, or a single slot or keyway: `on_circle` 2 x its distance from the axis, first place at `angle`."""
+
+    kind: Literal["holes", "slot"]
+    count: int = Field(default=1, ge=1, le=1000)
+    on_circle: Size
+    at: Length
+    diameter: Size | None = None
+    width: Size | None = None
+    angle: Angle = 0.0
+    made: Literal["stock"] | None = None
+
+
+Surface = Annotated[Round | Flat | Throat | Toothing | Pattern, Field(discriminator="kind")]
+
+
+class Relation(Shop):
+    """What is known of a bought or inspected part: `of` about or from another of its surfaces."""
+
+    of: str
+    about: str | None = None
+    from_: str | None = Field(default=None, alias="from")
+    runout: Error | None = None
+    face_runout: Error | None = None
+    across: Size | None = None
+    length: Dim | None = None
+
+    @model_validator(mode="after")
+    def it_states_one_relation(self) -> Relation:
+        if (self.about is None) == (self.from_ is None):
+            raise ValueError("a relation is either `about` an axis or `from` a face. Write one of them")
+        if self.from_ is not None and self.length is None:
+            raise ValueError("a relation `from` a face needs its length. Write length: 8.000 ±0.008")
+        if self.about is not None and self.runout is None and self.face_runout is None:
+            raise ValueError("a relation `about` an axis needs runout or face_runout. Write runout: 3 um")
+        if self.face_runout is not None and self.across is None:
+            raise ValueError("face_runout needs the circle it was read on. Write across: 56")
+        return self
+
+
+class Part(Shop):
+    """One part: its material, its surfaces by name, and the relations that no setup here makes (`given`)."""
+
+    material: str | None = None
+    surfaces: dict[str, Surface] = Field(min_length=1)
+    given: tuple[Relation, ...] = ()
+
+
+# -- worm, mesh, cutters, machines, place ----------------------------------------------------------------------------
+
+
+class Worm(Shop):
+    starts: int = Field(default=1, ge=1, le=12)
+    hand: Literal["right", "left"] | None = None
+    axial_module: Size | None = None
+    reference_diameter: Size | None = None
+    tip_diameter: Size | None = None
+    pressure_angle: Angle | None = None
+    profile: Literal["ZA", "ZN", "ZI", "ZK", "ZC"] | None = None
+    thread_thickness: Dim | None = None
+    end_float: Bound | None = None
+    runout: Error | None = None
+    speed: Speed | None = None
+
+
+class Mesh(Shop):
+    wheel: str
+    centre_distance: Dim | None = None
+    shaft_angle_error: AngleBound | None = None
+    housing: str | None = None
+
+
+class Cutter(Shop):
+    kind: Literal["single-point", "hob", "form-cutter", "drill", "reamer", "boring-head", "grinding-wheel", "broach"]
+    tip_radius: Size | None = None
+    bar_diameter: Size | None = None
+    overhang: Size | None = None
+    insert: str | None = None
+    diameter: Size | None = None
+    speed: Speed | None = None
+
+
+class Machine(Shop):
+    """A machine. `axis_runout`, `axis_wobble`: full indicator movement of its own axis, as errors of each cut."""
+
+    kind: Literal["lathe", "dividing-head", "rotary-table", "mill", "grinder", "drill-press", "jig-borer", "press"]
+    worm_ratio: int | None = Field(default=None, ge=1, le=1000)
+    nose_points: Literal["left", "right", "up", "front", "back"] | None = None
+    cutter_stands: Literal["front", "back", "above", "left", "right"] | None = None
+    axis_runout: Error | None = None
+    axis: Literal["horizontal", "vertical"] | None = None
+    hole_circles: tuple[int, ...] = ()
+
+
+class Distance(Shop):
+    """A length from a face: `{from: spindle.shoulder, length: 13.500 ±0.020}`."""
+
+    from_: str = Field(alias="from")
+    length: Dim
+
+
+class Place(Shop):
+    """Where the finished part works: the axis it turns about, and how far the worm's axis stands from a face."""
+
+    axis: str | None = None
+    worm_axis: Distance | None = None
+
+
+# -- what is asked ---------------------------------------------------------------------------------------------------
+
+What = Literal[
+    "run-out", "face-run-out", "coaxial", "cumulative-pitch", "single-pitch", "gap-centre-pitch", "index-range",
+    "index-within", "on-workpiece", "position", "chord", "pitch-circle", "mid-plane", "backlash", "backlash-swing",
+    "contact-length", "contact-area", "length", "squareness", "torque", "allowance",
+]
+
+
+class Require(Shop):
+    """One required figure. `what` is a closed list; `grade` takes the limit from ISO 1328-1:1995 for cylindrical gears."""
+
+    what: What
+    of: Annotated[str, BeforeValidator(lambda given: str(given) if type(given) is int else given)] | None = None
+    about: str | None = None
+    at_most: Limit | None = None
+    at_least: Limit | None = None
+    between: Limits | None = None
+    grade: int | None = Field(default=None, ge=0, le=12)
+    along: str | None = None
+    across: Size | None = None
+    at: Length | None = None
+    on_diameter: Size | None = None
+    clock: str | None = None
+    film: Bound | None = None
+    name: str | None = None
+
+    @model_validator(mode="after")
+    def it_has_one_limit(self) -> Require:
+        stated = [x for x in (self.between, self.grade) if x is not None]
+        stated += [self.at_most] if self.at_most is not None or self.at_least is not None else []
+        if len(stated) != 1:
+            raise ValueError("a requirement has one limit. Write at_most, at_least, between: [low, high], or grade")
+        return self
+
+
+class Waive(Shop):
+    """A finding the planner accepts, with the reason and the day it ends."""
+
+    rule: str
+    at: str
+    reason: str = Field(min_length=3)
+    until: str | None = None
+
+
+class Checked(Shop):
+    """A stop-and-check caution that somebody has answered."""
+
+    caution: str
+    op: int
+    by: str = Field(min_length=1)
+    note: str | None = None
+
+

@@ -1,0 +1,314 @@
+"""The models of a setup: hold, head, divide, cut, join; and the job that holds everything. Sizes mm, angles rad."""
+
+from __future__ import annotations
+
+from typing import Annotated, Literal
+
+from pydantic import BeforeValidator, Field, WithJsonSchema, model_validator
+
+from setupcheck.jobfile.models import (
+    Checked,
+    Cutter,
+    Dim,
+    Error,
+    Facing,
+    Machine,
+    Mesh,
+    Part,
+    Place,
+    Require,
+    Shop,
+    Waive,
+    Worm,
+)
+from setupcheck.jobfile.types import (
+    Angle,
+    AngleBound,
+    Bound,
+    Duration,
+    Fraction,
+    Length,
+    Limit,
+    Play,
+    Service,
+    Size,
+    Temperature,
+    TemperatureDifference,
+)
+
+Device = Literal[
+    "three-jaw", "four-jaw", "soft-jaws", "shimmed-jaws", "collet", "spigot", "plain-mandrel", "taper-mandrel",
+    "expanding-mandrel", "centres", "faceplate", "edge-finder", "indicator", "fixture", "vee-block", "magnetic-chuck",
+    "pot-chuck", "spindle",
+]
+
+
+class Through(Shop):
+    """One device that stands on another, with its own error: `through: [{by: centres, runout: 4 um}]`."""
+
+    by: str
+    runout: Error | None = None
+
+
+class Span(Shop):
+    """A stretch along the part."""
+
+    low: Length = Field(alias="from")
+    high: Length = Field(alias="to")
+
+    @model_validator(mode="after")
+    def it_has_a_length(self) -> Span:
+        if self.high <= self.low:
+            raise ValueError(f"it runs from {self.low:g} to {self.high:g} mm. Write from: below to:")
+        return self
+
+
+class Centre(Shop):
+    """The axis brought onto the machine axis: `on` a surface, at height `at`, with its error.
+
+    runout     full indicator movement of the datum as trued, or of the mandrel, spigot or collet that carries it
+    clearance  diametral play between datum and device; `rests` says how the part lies in it
+    x, y       readings of an edge finder or indicator along two machine axes, each ±
+    turned     where the part's mark stands from the device's mark
+    """
+
+    on: str
+    by: Device
+    at: Length | None = None
+    runout: Error | None = None
+    clearance: Play | None = None
+    rests: Literal["hanging", "pushed", "free", "centred"] | None = None
+    x: Bound | None = None
+    y: Bound | None = None
+    grip: Span | None = None
+    through: tuple[Through, ...] = ()
+    turned: Angle | None = None
+
+
+class Square(Shop):
+    """The face that rules the lean; `across` is the circle the indicator ran on."""
+
+    on: str
+    by: str | None = None
+    face_runout: Error | None = None
+    across: Size | None = None
+    chip: Bound | None = None
+
+    @model_validator(mode="after")
+    def a_reading_has_its_circle(self) -> Square:
+        if (self.face_runout is not None or self.chip is not None) and self.across is None:
+            raise ValueError("face_runout needs the circle it is read on. Write across: 100")
+        return self
+
+
+class Spacer(Shop):
+    """A shim or spacer between a stop and its face."""
+
+    name: str
+    length: Dim
+
+
+class Stop(Shop):
+    """What rules the length: `on` a face, with its error. In a join `against` is the face of the other part.
+
+    touches  `all-round` (a plate or shoulder) or `point` (a single stop, at radius `radius` and direction `direction`)
+    """
+
+    on: str
+    against: str | None = None
+    error: Error | None = None
+    touches: Literal["all-round", "point"] | None = None
+    radius: Size | None = None
+    direction: Angle | None = None
+    spacers: tuple[Spacer, ...] = ()
+
+
+class Clock(Shop):
+    """What rules the angle about the axis: `on` a keyway, tooth gap or hole, with the error of touching it."""
+
+    on: str
+    number: int = Field(default=1, ge=1)
+    error: Error | None = None
+
+
+class Hold(Shop):
+    centre: Centre | None = None
+    and_centre: Centre | None = None
+    square: Square | None = None
+    stop: Stop | None = None
+    clock: Clock | None = None
+
+
+class MidPlane(Shop):
+    """How the cutter is brought to the mid-plane of the teeth."""
+
+    found: Literal["after-tilt", "before-tilt", "no-tilt"]
+    error: Error | None = None
+    pivot: Dim | None = None
+
+
+class Head(Shop):
+    """The tilt of a dividing head or table, set for the cut."""
+
+    tilt: Angle
+    uncertainty: AngleBound | None = None
+    leans: Literal["nose-up", "nose-down", "left", "right"] | None = None
+    by: Literal["scale", "vernier", "sine-bar", "readout"] | None = None
+    sine_bar: Size | None = None
+    blocks: Dim | None = None
+    mid_plane: MidPlane | None = None
+
+
+class Waves(Shop):
+    """Systematic division errors, each an amplitude ±."""
+
+    once_per_turn: AngleBound | None = None
+    twice_per_turn: AngleBound | None = None
+    once_per_crank: AngleBound | None = None
+
+
+class Divide(Shop):
+    """How the circle is divided, and what each way costs. Amplitudes and bounds are ±."""
+
+    by: Literal["hole-circle", "direct", "vernier", "readout", "theodolite", "polygon", "face-teeth", "sine-bar", "x-y",
+                "rotary-table"]
+    circle: int | None = Field(default=None, ge=1, le=400)
+    wheel: Waves | None = None
+    worm: Waves | None = None
+    setting: AngleBound | None = None
+    clamp: AngleBound | None = None
+    step: Angle | None = None
+    drift: AngleBound | None = None
+    faces: Literal["one", "two"] | None = None
+    order: Literal["in-turn", "spread"] | None = None
+
+
+class Scatter(Shop):
+    """What each hole or tooth adds for itself, ±."""
+
+    radial: Bound | None = None
+    tangential: Bound | None = None
+    by: str | None = None
+
+
+class Touched(Shop):
+    """The surface the depth is counted from, with its measured diameter."""
+
+    surface: str
+    measured: Size | None = None
+
+
+class Cut(Shop):
+    """One surface cut in a setup. An empty map finishes it to its drawing size.
+
+    to                 diameter, or position of a face, that this operation leaves
+    leave_on_diameter, leave_on_radius, leave   stock left for a later operation
+    error              error of the length or position of this cut (dial, stop, readout)
+    spindle_to_axis    for a pattern on a rotary table: `x` is the pitch radius, `y` turns the pattern
+    removes            surfaces that are gone afterwards
+    from_surface       the surface it is cut out of, where it has no earlier state of its own
+    """
+
+    to: Length | None = None
+    state: Literal["rough", "finish"] | None = None
+    leave_on_diameter: Length | None = None
+    leave_on_radius: Length | None = None
+    leave: Length | None = None
+    error: Error | None = None
+    removes: tuple[str, ...] = ()
+    from_surface: str | None = None
+    finishing_cut: Size | None = None
+    form: Bound | None = None
+    cutter: str | None = None
+    depth: Size | None = None
+    depth_from: Annotated[Touched, BeforeValidator(lambda g: {"surface": g} if isinstance(g, str) else g), WithJsonSchema(
+        {"anyOf": [{"type": "string"}, {"$ref": "#/$defs/Touched"}]})] | None = None
+    passes: tuple[Size, ...] = ()
+    each: Scatter | None = None
+    spindle_to_axis: dict[Literal["x", "y"], Dim] | None = None
+    tool_change_after: int | None = Field(default=None, ge=1)
+
+
+class Heat(Shop):
+    hub: Temperature | None = None
+    shaft: Temperature | None = None
+    by: Literal["oven", "hot-plate", "induction", "oil-bath", "flame"] | None = None
+    oven_error: TemperatureDifference | None = None
+    carry: Duration | None = None
+    cold_by: Literal["freezer", "dry-ice", "liquid-nitrogen"] | None = None
+
+
+class Join(Shop):
+    """Two parts put together: the machine axis of this step is the inner part's surface.
+
+    square  `bore` (a long fit rules the lean) or `shoulder` (the faces named in `stop` do)
+    mounted_at  where the outer part's mark stands on the inner part's, if it is kept
+    """
+
+    outer: str
+    inner: str
+    by: Literal["shrink", "press", "slide", "taper", "screw", "bond"]
+    square: Literal["bore", "shoulder"] | None = None
+    fit_error: Error | None = None
+    clearance: Play | None = None
+    rests: Literal["hanging", "pushed", "free", "centred"] | None = None
+    stop: Stop | None = None
+    mounted_at: Angle | None = None
+    heat: Heat | None = None
+    joint: Literal["degreased", "oiled"] | None = None
+    must_carry: dict[Literal["torque", "axial_force"], Limit] | None = None
+    serves_at: Service | None = None
+
+
+class Setup(Shop):
+    """One numbered step: a holding with its cuts, or a joining."""
+
+    op: int = Field(ge=1, le=100_000)
+    note: str | None = None
+    machine: str | None = None
+    part: str | None = None
+    looks_at_tool: Facing | None = None
+    keeps: int | None = None
+    hold: Hold | None = None
+    head: Head | None = None
+    divide: Divide | None = None
+    cut: dict[str, Cut] = Field(default_factory=dict)
+    join: Join | None = None
+
+    @model_validator(mode="after")
+    def it_cuts_or_joins(self) -> Setup:
+        if self.join is not None and (self.cut or self.hold is not None or self.keeps is not None):
+            raise ValueError("a setup either joins two parts or holds and cuts one. Make two setups of it")
+        if self.join is None and not self.cut:
+            raise ValueError("this setup cuts nothing and joins nothing. Write cut: {surface: {}} or join: {…}")
+        if self.cut and self.keeps is None and self.hold is None:
+            raise ValueError("this setup does not say how the part is held. Write hold: {…}, or keeps: with the op never opened")
+        if self.keeps is not None and self.hold is not None:
+            raise ValueError("`keeps` and `hold` say two different things. Keep one of them")
+        if self.hold is not None and self.hold.and_centre is not None and self.hold.square is not None:
+            raise ValueError("the lean is ruled twice, by square and by and_centre. Keep exactly one tilt datum")
+        if self.cut and self.keeps is None and self.looks_at_tool is None:
+            raise ValueError("looks_at_tool is missing. Write looks_at_tool: +z or -z, the end of the part that faces the tool")
+        return self
+
+
+class Job(Shop):
+    """The whole job file."""
+
+    setupcheck: Literal[1]
+    title: str = Field(min_length=1)
+    job: str | None = None
+    revision: str | None = None
+    units: Literal["mm", "in"]
+    room: Temperature = 20.0
+    confidence: Fraction = Field(default=0.95, gt=0.5, lt=1.0)
+    parts: dict[str, Part] = Field(min_length=1)
+    worm: Worm | None = None
+    mesh: Mesh | None = None
+    cutters: dict[str, Cutter] = Field(default_factory=dict)
+    machines: dict[str, Machine] = Field(default_factory=dict)
+    setups: tuple[Setup, ...] = ()
+    place: Place | None = None
+    require: tuple[Require, ...] = ()
+    waive: tuple[Waive, ...] = ()
+    checked: tuple[Checked, ...] = ()

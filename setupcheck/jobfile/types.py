@@ -1,0 +1,109 @@
+"""Values of the job file in shop notation, as pydantic types. Inside: mm, rad, degC, N, N mm, s."""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+from typing import Annotated, Literal
+
+from pydantic import BeforeValidator, ValidationInfo, WithJsonSchema
+
+from setupcheck import notation
+from setupcheck.notation import Amount
+
+Given = str | int | float
+TEXT_OR_NUMBER = WithJsonSchema({"type": ["string", "number"]})
+TEXT = WithJsonSchema({"type": "string"})
+
+
+def _units(info: ValidationInfo) -> Literal["mm", "in"]:
+    return "in" if (info.context or {}).get("units") == "in" else "mm"
+
+
+def _scalar(given: object) -> Given:
+    """The text or number itself; a list, a map or true/false is refused in words."""
+    if isinstance(given, bool) or not isinstance(given, str | int | float):
+        kind = {bool: "true or false", list: "a list", dict: "a map", type(None): "empty"}.get(type(given), "no value")
+        raise ValueError(f"one value belongs here, not {kind}. Write it like 12.5 mm, 10 um or 20 deg")
+    return given
+
+
+def _plain(read: Callable[[Given], float]) -> BeforeValidator:
+    return BeforeValidator(lambda given: read(_scalar(given)))
+
+
+def _size(given: object, info: ValidationInfo) -> float:
+    return notation.length(_scalar(given), units=_units(info))
+
+
+def _positive_size(given: object, info: ValidationInfo) -> float:
+    value = notation.length(_scalar(given), units=_units(info))
+    if value <= 0.0:
+        raise ValueError(f"{given!r} is not a size. Write a length above zero")
+    return value
+
+
+def _bound(given: object, info: ValidationInfo) -> float:
+    return notation.bound(_scalar(given), units=_units(info), unit_needed=True)
+
+
+def _signed_error(given: object, info: ValidationInfo) -> float:
+    return notation.length(_scalar(given), units=_units(info), unit_needed=True)
+
+
+def _range(given: object, info: ValidationInfo) -> tuple[float, float]:
+    return notation.length_range(given, units=_units(info), unit_needed=True)
+
+
+def _amount(given: object, info: ValidationInfo) -> Amount:
+    return notation.amount(_scalar(given), units=_units(info))
+
+
+def _amounts(given: object, info: ValidationInfo) -> tuple[Amount, Amount]:
+    if not isinstance(given, list) or len(given) != 2:
+        raise ValueError(f"{given!r} is not a pair of limits. Write [20 um, 80 um]")
+    low, high = (_amount(g, info) for g in given)
+    if low.dimension != high.dimension or low.value > high.value:
+        raise ValueError(f"{given!r} does not run from low to high in one kind of unit. Write [20 um, 80 um]")
+    return low, high
+
+
+def _service(given: object, info: ValidationInfo) -> tuple[float, float]:
+    if not isinstance(given, list) or len(given) != 2:
+        raise ValueError(f"{given!r} is not a span of temperatures. Write [5 degC, 45 degC]")
+    low, high = (notation.temperature(_scalar(g)) for g in given)
+    if low > high:
+        raise ValueError(f"{given!r} runs from warm to cold. Write the colder one first")
+    return low, high
+
+
+Length = Annotated[float, BeforeValidator(_size), TEXT_OR_NUMBER]
+"""A size or position [mm]; a bare number takes the file's units."""
+Size = Annotated[float, BeforeValidator(_positive_size), TEXT_OR_NUMBER]
+"""A length above zero [mm]."""
+Bound = Annotated[float, BeforeValidator(_bound), TEXT]
+"""A non-negative error bound [mm]; the unit must be written."""
+Reading = Annotated[float, BeforeValidator(_signed_error), TEXT]
+"""A signed measured error [mm]; the unit must be written."""
+Play = Annotated[tuple[float, float], BeforeValidator(_range), WithJsonSchema({"type": "array", "items": {"type": "string"}})]
+"""Smallest and largest diametral clearance [mm]."""
+Angle = Annotated[float, _plain(notation.angle), TEXT]
+"""An angle [rad]; the unit must be written."""
+AngleBound = Annotated[float, _plain(notation.angle_bound), TEXT]
+"""A non-negative angle bound [rad]."""
+Temperature = Annotated[float, _plain(notation.temperature), TEXT]
+TemperatureDifference = Annotated[float, _plain(notation.temperature_difference), TEXT]
+Duration = Annotated[float, _plain(notation.duration), TEXT]
+Torque = Annotated[float, _plain(notation.torque), TEXT]
+"""[N mm]"""
+Force = Annotated[float, _plain(notation.force), TEXT]
+Mass = Annotated[float, _plain(notation.mass), TEXT]
+"""[kg]"""
+Speed = Annotated[float, _plain(notation.speed), TEXT]
+"""[rev/min]"""
+Fraction = Annotated[float, _plain(notation.fraction), TEXT_OR_NUMBER]
+Limit = Annotated[Amount, BeforeValidator(_amount), TEXT_OR_NUMBER]
+Limits = Annotated[tuple[Amount, Amount], BeforeValidator(_amounts),
+                   WithJsonSchema({"type": "array", "items": {"type": "string"}, "minItems": 2, "maxItems": 2})]
+Service = Annotated[tuple[float, float], BeforeValidator(_service),
+                    WithJsonSchema({"type": "array", "items": {"type": "string"}, "minItems": 2, "maxItems": 2})]
+"""Coldest and warmest temperature in use [degC]."""

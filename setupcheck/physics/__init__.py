@@ -1,0 +1,1 @@
+"""Physics: pure functions of numbers. Lengths mm, angles rad, degC, N, MPa."""

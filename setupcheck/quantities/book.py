@@ -1,0 +1,196 @@
+"""The Book: named numbers, their instances, what they rest on, and what is missing. Knows no physics.
+
+Three absences never mix: None (the job has no such thing), Open (the thing is there, the number is not), and out of
+its validity range (Open with the reason).
+"""
+
+from __future__ import annotations
+
+import math
+from collections.abc import Callable, Iterator, Mapping, Sequence
+from dataclasses import dataclass, field
+
+SINGLE = frozenset({"job", "place", "worm", "mesh"})
+"""Kinds of thing of which a job has at most one, so they are found from anywhere."""
+
+BY_INSTANCE = "stack"
+"""Unit of a quantity whose unit belongs to its instance: one stack counts in um, the next in arcsec."""
+
+INCH = {"um": "thou", "mm": "in"}
+"""What an inch file shows instead; one decimal more goes with it."""
+
+
+@dataclass(frozen=True, eq=False)
+class Scope:
+    """One thing of the job that can own numbers.
+
+    kind    job, place, setup, hold, cut, join, stack, …
+    key     "30", "30/centre", "30/teeth", "cumulative-pitch.teeth.bearings"; empty for single things
+    node    its record;  path  where the planner finds it: "setups.30.hold.centre"
+    op      the operation it belongs to;  line  its line in the job file
+    within  what it stands in, nearest first (a cut in its setup)
+    """
+
+    kind: str
+    key: str
+    node: object
+    path: str
+    op: int | None = None
+    line: int = 0
+    within: tuple[Scope, ...] = ()
+
+    def outward(self) -> Iterator[Scope]:
+        """Itself, then everything it stands in."""
+        yield self
+        for outer in self.within:
+            yield from outer.outward()
+
+
+@dataclass(frozen=True, slots=True)
+class Known:
+    """A value, and the typical values it was made with."""
+
+    value: object
+    rests_on: frozenset[str] = frozenset()
+
+
+@dataclass(frozen=True, slots=True)
+class Open:
+    """No value: the job paths to fill, or the reason."""
+
+    missing: tuple[str, ...] = ()
+    because: str = ""
+
+
+Answer = Known | Open | None
+
+
+class OutOfRange(ValueError):
+    """Raised by a formula outside its stated validity."""
+
+
+@dataclass(frozen=True, slots=True)
+class Quantity:
+    """One row of a table of quantities.
+
+    name     family.figure;  per  the kind of thing that owns one
+    unit     display unit ("" for texts; "stack" where the instance says it);  digits  decimals shown
+    of       pure function of the inputs; may return a value, Known, Open or None
+    inputs   argument -> another quantity ("route.floor"); an entry of this thing (":circle", ":" for its record);
+             its own name ("@key", "@path"); every instance ("each …"), or those that have a value ("known …")
+    says     one line for people
+    if_none  value of an argument when the job has no such thing
+    """
+
+    name: str
+    per: str
+    unit: str
+    digits: int
+    of: Callable[..., object]
+    inputs: Mapping[str, str]
+    says: str
+    if_none: Mapping[str, object] = field(default_factory=dict)
+
+
+class Book:
+    """All quantities of one job, computed on demand and once."""
+
+    def __init__(self, quantities: Sequence[Quantity], scopes: Sequence[Scope], *, inches: bool = False) -> None:
+        self.quantities: dict[str, Quantity] = {q.name: q for q in quantities}
+        self.scopes = tuple(scopes)
+        self.inches = inches
+        self.made: dict[tuple[str, Scope], Answer] = {}
+
+    def instances(self, kind: str) -> list[Scope]:
+        """All things of one kind, in the order of the job."""
+        return [s for s in self.scopes if s.kind == kind]
+
+    def home(self, name: str, at: Scope) -> Scope | None:
+        """The instance of a quantity seen from `at`: outward only, never sideways."""
+        kind = self.quantities[name].per
+        found = next((s for s in at.outward() if s.kind == kind), None)
+        if found is None and kind in SINGLE:
+            found = next((s for s in self.scopes if s.kind == kind), None)
+        return found
+
+    def get(self, name: str, at: Scope) -> Answer:
+        """The answer of one quantity or input, seen from `at`."""
+        if name.startswith(":"):
+            return _entry(at, name[1:])
+        if name.startswith("@"):
+            return Known(getattr(at, name[1:]))
+        if name.startswith("known "):
+            inner = name[6:]
+            answers = [self.get(inner, s) for s in self.instances(self.quantities[inner].per)]
+            return _together([a for a in answers if isinstance(a, Known)])
+        if name.startswith("each "):
+            inner = name[5:]
+            return _together([self.get(inner, s) for s in self.instances(self.quantities[inner].per)])
+        home = self.home(name, at)
+        if home is None:
+            return None
+        if (name, home) not in self.made:
+            self.made[name, home] = self._make(self.quantities[name], home)
+        return self.made[name, home]
+
+    def unit(self, name: str, at: Scope) -> str:
+        """Display unit of a quantity at an instance."""
+        unit = self.quantities[name].unit
+        unit = str(getattr(at.node, "unit")) if unit == BY_INSTANCE else unit
+        return INCH.get(unit, unit) if self.inches else unit
+
+    def digits(self, name: str, at: Scope) -> int:
+        """Decimals shown of a quantity at an instance."""
+        quantity = self.quantities[name]
+        digits = int(getattr(at.node, "digits")) if quantity.unit == BY_INSTANCE else quantity.digits
+        return digits + (self.inches and self.unit(name, at) in INCH.values())
+
+    def _make(self, quantity: Quantity, home: Scope) -> Answer:
+        got: dict[str, Answer] = {}
+        for argument, name in quantity.inputs.items():
+            answer = self.get(name, home)
+            if answer is None:
+                if argument not in quantity.if_none:
+                    return None
+                answer = Known(quantity.if_none[argument])
+            got[argument] = answer
+        whole = _together(list(got.values()))
+        if isinstance(whole, Open):
+            return whole
+        values = whole.value
+        assert isinstance(values, tuple)
+        try:
+            made = quantity.of(**dict(zip(got, values, strict=True)))
+        except OutOfRange as why:
+            return Open(because=str(why))
+        if made is None or isinstance(made, Open):
+            return made
+        if isinstance(made, Known):
+            made, rests_on = made.value, made.rests_on | whole.rests_on
+        else:
+            rests_on = whole.rests_on
+        if isinstance(made, float) and not math.isfinite(made):
+            return Open(because=f"{quantity.name} has no finite value here")
+        return Known(made, rests_on)
+
+
+def _entry(at: Scope, path: str) -> Answer:
+    """An entry of a thing's own record; what the planner left out is Open with its path."""
+    if not path:
+        return Known(at.node)
+    node = at.node
+    for step in path.split("."):
+        node = getattr(node, step)
+        if node is None:
+            return Open((f"{at.path}.{path}".lstrip("."),))
+    return Known(node)
+
+
+def _together(parts: Sequence[Answer]) -> Known | Open:
+    """All parts known: a tuple of their values; otherwise everything that is missing."""
+    opens = [p for p in parts if isinstance(p, Open)]
+    if opens:
+        missing = tuple(dict.fromkeys(m for o in opens for m in o.missing))
+        return Open(missing, "; ".join(dict.fromkeys(o.because for o in opens if o.because)))
+    known = [p for p in parts if isinstance(p, Known)]
+    return Known(tuple(p.value for p in known), frozenset().union(*(p.rests_on for p in known)))

@@ -1,0 +1,48 @@
+"""Holding devices: one row each, in shop words. A new device is a new row here and a value in rules/data/typical.yaml."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+
+@dataclass(frozen=True, slots=True)
+class Device:
+    """How a device takes a part.
+
+    words      after the surface's name: "rim in four-jaw chuck"
+    clearance  the datum lies in it with play, which must be stated
+    rests      how a part lies in the play if the planner does not say: hanging (on a horizontal axis), free
+    jaws       number of jaws for directions given as "jaw 2"; 0 where it has none
+    grips      it grips over a length and so can rule the lean by two planes
+    xy         its error is stated along two machine axes
+    """
+
+    words: str
+    clearance: bool = False
+    rests: str = "hanging"
+    jaws: int = 0
+    grips: bool = False
+    xy: bool = False
+
+
+DEVICES: dict[str, Device] = {
+    "three-jaw": Device("in three-jaw chuck", jaws=3, grips=True),
+    "four-jaw": Device("in four-jaw chuck", jaws=4, grips=True),
+    "soft-jaws": Device("in soft jaws", jaws=3, grips=True),
+    "shimmed-jaws": Device("in jaws over shims", jaws=3, grips=True),
+    "collet": Device("in collet", grips=True),
+    "pot-chuck": Device("in pot chuck", grips=True),
+    "spigot": Device("in spigot", clearance=True),
+    "plain-mandrel": Device("on plain mandrel", clearance=True, grips=True),
+    "taper-mandrel": Device("on taper mandrel", grips=True),
+    "expanding-mandrel": Device("on expanding mandrel", grips=True),
+    "centres": Device("between centres"),
+    "faceplate": Device("on faceplate"),
+    "fixture": Device("in fixture"),
+    "vee-block": Device("in vee-block"),
+    "magnetic-chuck": Device("on magnetic chuck"),
+    "indicator": Device("trued by indicator"),
+    "edge-finder": Device("found by edge finder", xy=True),
+    "spindle": Device("in its own bearings"),
+}
+"""Source of the rows: common practice."""

@@ -1,0 +1,126 @@
+"""From a `divide` entry to the errors of each tooth or hole, and what a hole circle or a readout step leaves over. rad."""
+
+from __future__ import annotations
+
+import math
+from fractions import Fraction
+
+from setupcheck.jobfile.setups import Cut, Divide
+from setupcheck.ledger.account import Account
+from setupcheck.ledger.causes import Cause
+from setupcheck.ledger.route import Pattern, Periodic, Scatter
+from setupcheck.quantities.book import OutOfRange
+from setupcheck.quantities.causes import Entry, size_error
+
+
+def turns_per_place(worm_ratio: int, count: int) -> Fraction:
+    """Turns of the crank from one place to the next, exact. Source: ratio of the head, fact of the trade.
+
+    >>> turns_per_place(40, 72)
+    Fraction(5, 9)
+    """
+    return Fraction(worm_ratio, count)
+
+
+def holes_left_over(worm_ratio: int, count: int, circle: int) -> float:
+    """Part of a hole that one step on this circle leaves over, 0 .. 0.5; 0 where the circle fits. Source: arithmetic.
+
+    >>> holes_left_over(40, 72, 18), round(holes_left_over(40, 72, 20), 3)
+    (0.0, 0.111)
+    """
+    holes = turns_per_place(worm_ratio, count) * circle
+    part = holes - math.floor(holes)
+    return float(min(part, 1 - part))
+
+
+def circles_that_fit(worm_ratio: int, count: int, circles: tuple[int, ...] = tuple(range(15, 67))) -> tuple[int, ...]:
+    """Hole circles on which `count` places close: those the denominator of the turns divides. Source: arithmetic."""
+    needed = turns_per_place(worm_ratio, count).denominator
+    return tuple(c for c in circles if c % needed == 0)
+
+
+def rounded_settings(count: int, step: float, start: float = 0.0) -> tuple[float, ...]:
+    """Error of each absolute setting rounded to the readout's step [rad], first place as the zero.
+
+    step  smallest step of the readout [rad], > 0.  Raises: OutOfRange for a step that is not above zero.
+    Source: arithmetic; absolute angles, so nothing adds up round the turn.
+    """
+    if not step > 0.0:
+        raise OutOfRange("a readout step must be above zero")
+    angles = [start + math.tau * j / count for j in range(count)]
+    errors = [round(a / step) * step - a for a in angles]
+    return tuple(0.0 if abs(e) < 1e-12 else e for e in errors)
+
+
+def divided(pattern: Pattern, divide: Divide | None, cut: Cut, *, op: int, name: str, worm_ratio: int | None, turn: int
+            ) -> Pattern:
+    """The pattern with the errors of the dividing method and of the single places.
+
+    No `divide` entry: the division is undetermined, unless there is only one place.
+    """
+    path = f"setups.{op}.divide"
+    head = f"op {op}, dividing {name}"
+    periodic: list[Periodic] = []
+    scatter: list[Scatter] = []
+    drift: list[Cause] = []
+    rounding: tuple[float, ...] = ()
+
+    def wave(what: str, bound: float, harmonic: int, key: str) -> None:
+        periodic.append(Periodic(Cause(f"{head}: {what}", "disc", op, high=bound, paths=(f"{path}.{key}",)), harmonic))
+
+    if divide is None:
+        if pattern.count > 1:
+            scatter.append(Scatter(Cause(f"{head}: how the circle is divided", "undetermined", op, missing=path), "angle", 0.0))
+    else:
+        if divide.wheel is None and divide.setting is None and pattern.count > 1:
+            scatter.append(Scatter(Cause(f"{head}: error of the device", "undetermined", op, missing=f"{path}.wheel"), "angle", 0.0))
+        for owner, key in ((divide.wheel, "wheel"), (divide.worm, "worm")):
+            if owner is None:
+                continue
+            if owner.once_per_turn is not None:
+                wave(f"once per turn of the {key}", owner.once_per_turn, 1, f"{key}.once_per_turn")
+            if owner.twice_per_turn is not None:
+                wave(f"twice per turn of the {key}", owner.twice_per_turn, 2, f"{key}.twice_per_turn")
+            if owner.once_per_crank is not None:
+                if worm_ratio is None:
+                    missing = Cause(f"{head}: once per crank turn", "undetermined", op, missing=f"setups.{op}.machine")
+                    scatter.append(Scatter(missing, "angle", 0.0))
+                else:
+                    wave("once per crank turn", owner.once_per_crank, worm_ratio, f"{key}.once_per_crank")
+        for what, bound, key in (("setting", divide.setting, "setting"), ("clamping shift", divide.clamp, "clamp")):
+            if bound:
+                cause = Cause(f"{head}: {what}", "length", op, high=bound, paths=(f"{path}.{key}",))
+                scatter.append(Scatter(cause, "angle", bound))
+        if divide.drift:
+            drift.append(Cause(f"{head}: drift over the turn", "length", op, high=divide.drift, paths=(f"{path}.drift",)))
+        if divide.step:
+            rounding = rounded_settings(pattern.count, divide.step)
+    if cut.each is not None:
+        each = f"setups.{op}.cut.{name}.each"
+        words = f" by {cut.each.by}" if cut.each.by else ""
+        for along, limit in (("radial", cut.each.radial), ("tangential", cut.each.tangential)):
+            if limit:
+                cause = Cause(f"op {op}, {name}{words}: {along} scatter", "length", op, high=limit, paths=(f"{each}.{along}",))
+                scatter.append(Scatter(cause, along, limit))
+    return Pattern(pattern.count, pattern.radius, turn, pattern.start, pattern.pressure_angle, tuple(periodic),
+                   tuple(scatter), rounding, tuple(drift), _table_offset(cut, op, name, pattern.radius)[0])
+
+
+def _table_offset(cut: Cut, op: int, name: str, radius: float) -> tuple[Account, Account]:
+    """(radial error, error across it) [mm] from the spindle's place over a rotary table."""
+    if not cut.spindle_to_axis:
+        return Account(), Account()
+    radial, across = Account(), Account()
+    path = f"setups.{op}.cut.{name}.spindle_to_axis"
+    if (x := cut.spindle_to_axis.get("x")) is not None:
+        middle, error = size_error(x, Entry(f"op {op}, {name}: spindle to table axis, x", op, f"{path}.x", ""))
+        radial = error.plus_constant(middle - radius)
+    if (y := cut.spindle_to_axis.get("y")) is not None:
+        middle, error = size_error(y, Entry(f"op {op}, {name}: spindle to table axis, y", op, f"{path}.y", ""))
+        across = error.plus_constant(middle)
+    return radial, across
+
+
+def table_turn(cut: Cut, *, op: int, name: str, radius: float) -> Account:
+    """What the y setting of a spindle over a rotary table turns the whole pattern by [rad]. Source: geometry (arc / r)."""
+    return _table_offset(cut, op, name, radius)[1] * (1.0 / radius)

@@ -1,0 +1,155 @@
+"""Facts of an instance for the conditions of rules and cautions: looked up outward, unknown where the planner left them out."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+from setupcheck.jobfile.names import Ref
+from setupcheck.jobfile.setups import Setup
+from setupcheck.quantities.book import Scope
+from setupcheck.quantities.route import machine_of
+from setupcheck.quantities.scopes import CutEntry, HoldEntry
+from setupcheck.quantities.shop import Floor
+from setupcheck.quantities.stacks import Stack
+
+FAMILIES = {"cu": "copper-alloy", "bronze": "copper-alloy", "brass": "copper-alloy", "gunmetal": "copper-alloy",
+            "gg": "cast-iron", "gjl": "cast-iron", "gjs": "cast-iron", "cast-iron": "cast-iron", "grey-iron": "cast-iron",
+            "al": "aluminium", "en aw": "aluminium", "steel": "steel", "c": "steel", "s": "steel", "x": "steel"}
+"""First letters of material names and what they are. Source: common designations (EN), from memory."""
+
+
+@dataclass(frozen=True, slots=True)
+class UnknownFact:
+    """A fact the job could state and does not; `path` is the key to fill."""
+
+    path: str
+
+
+Fact = str | int | float | bool | UnknownFact | None
+
+
+def material_family(material: str) -> str:
+    """copper-alloy, steel, cast-iron, aluminium or other, from the name of a material.
+
+    >>> material_family("CuSn12-C"), material_family("42CrMo4"), material_family("EN-GJL-250")
+    ('copper-alloy', 'steel', 'cast-iron')
+    """
+    name = material.lower().removeprefix("en-")
+    if name[:1].isdigit():
+        return "steel"
+    for start, family in FAMILIES.items():
+        if name.startswith(start) and (len(start) > 1 or name[1:2].isdigit()):
+            return family
+    return "other"
+
+
+def facts_of(floor: Floor, scope: Scope, name: str) -> Fact:
+    """The answer to one fact at one instance; None where this kind of thing has no such fact."""
+    family, _, field = name.partition(".")
+    setup = next((s.node for s in scope.outward() if isinstance(s.node, Setup)), None)
+    match family:
+        case "job":
+            return any(s.kind == "teeth" for p in floor.loaded.job.parts.values() for s in p.surfaces.values())
+        case "instance":
+            return _called(scope, field)
+        case "part" | "surface":
+            return _surface_fact(floor, scope, setup, name)
+        case "hold":
+            return _hold_fact(floor, scope, setup, field)
+        case "cut" | "cutter":
+            return _cut_fact(floor, scope, setup, name)
+    if setup is None:
+        return None
+    path = f"setups.{setup.op}"
+    if name == "setup.kind":
+        return "join" if setup.join is not None else "cut"
+    if name == "setup.machine_kind":
+        if setup.join is not None:
+            return None
+        _, machine = machine_of(floor.loaded, setup)
+        return machine.kind if machine is not None else UnknownFact(f"{path}.machine")
+    if name == "head.tilted":
+        return setup.head is not None and setup.head.tilt != 0.0
+    if name == "divide.by":
+        return setup.divide.by if setup.divide is not None else None
+    if setup.join is None:
+        return None
+    if name == "join.by":
+        return setup.join.by
+    if name == "heat.by":
+        if setup.join.by != "shrink":
+            return None
+        heat = setup.join.heat
+        return heat.by if heat is not None and heat.by is not None else UnknownFact(f"{path}.join.heat.by")
+    return None
+
+
+def _called(scope: Scope, field: str) -> str | None:
+    """How an instance is called in messages, and the surface it is about."""
+    node = scope.node
+    if isinstance(node, Stack):
+        return node.require.name or f"{node.require.what} at {_spoken(node)}" if field == "name" else node.of
+    if isinstance(node, HoldEntry):
+        return node.entry.on if field == "surface" else f"op {scope.op}, {node.step.replace('_', ' ')} on {node.entry.on}"
+    if isinstance(node, CutEntry):
+        return node.name
+    return None
+
+
+def _spoken(stack: Stack) -> str:
+    of = stack.of.rpartition(".")[2] or stack.of
+    about = stack.about.rpartition(".")[2]
+    return f"{of} about {about}" if about and stack.require.what not in ("allowance", "chord", "pitch-circle") else of
+
+
+def _ref(floor: Floor, scope: Scope, setup: Setup | None) -> Ref | None:
+    part = setup.part if setup is not None else None
+    if isinstance(scope.node, CutEntry):
+        return floor.loaded.ref(scope.node.name, part)
+    if isinstance(scope.node, HoldEntry):
+        own = part or (floor.part_of.get(setup.op) if setup is not None else None)
+        found = floor.loaded.surfaces().get(own or "", ())
+        return floor.loaded.ref(scope.node.entry.on, own if scope.node.entry.on.partition("@")[0] in found else None)
+    if isinstance(scope.node, Stack) and scope.node.of and not scope.node.of.isdigit():
+        return floor.loaded.ref(scope.node.of)
+    return None
+
+
+def _surface_fact(floor: Floor, scope: Scope, setup: Setup | None, name: str) -> Fact:
+    ref = _ref(floor, scope, setup)
+    if name == "surface.kind":
+        return floor.loaded.job.parts[ref.part].surfaces[ref.surface].kind if ref is not None else None
+    parts = [ref.part] if ref is not None else []
+    if not parts and setup is not None:
+        parts = [floor.part_of[setup.op]] if setup.op in floor.part_of else []
+        if setup.join is not None:
+            parts = [floor.loaded.ref(setup.join.outer).part]
+    if not parts:
+        return None
+    material = floor.loaded.job.parts[parts[0]].material
+    if material is None:
+        return UnknownFact(f"parts.{parts[0]}.material")
+    return material if name == "part.material" else material_family(material)
+
+
+def _hold_fact(floor: Floor, scope: Scope, setup: Setup | None, field: str) -> Fact:
+    entry = scope.node.entry if isinstance(scope.node, HoldEntry) else (
+        setup.hold.centre if setup is not None and setup.hold is not None else None)
+    if entry is None:
+        return None
+    if field == "by":
+        return getattr(entry, "by", None)
+    ref = _ref(floor, scope, setup)
+    return floor.loaded.job.parts[ref.part].surfaces[ref.surface].kind if ref is not None else None
+
+
+def _cut_fact(floor: Floor, scope: Scope, setup: Setup | None, name: str) -> Fact:
+    if not isinstance(scope.node, CutEntry) or setup is None:
+        return None
+    cut = scope.node.cut
+    if name == "cut.state":
+        return cut.state or "finish"
+    if name == "cut.kind":
+        ref = floor.loaded.ref(scope.node.name, setup.part)
+        return floor.loaded.job.parts[ref.part].surfaces[ref.surface].kind
+    return floor.loaded.job.cutters[cut.cutter].kind if cut.cutter is not None else None

@@ -1,0 +1,191 @@
+"""Facts and numbers of holds, dividing methods and the place, for the rules that look at the route itself. mm, rad."""
+
+from __future__ import annotations
+
+from setupcheck.jobfile.setups import Setup
+from setupcheck.ledger.teeth import folded
+from setupcheck.quantities.book import Open
+from setupcheck.quantities.dividing import holes_left_over, rounded_settings
+from setupcheck.quantities.judged import Result
+from setupcheck.quantities.route import machine_of
+from setupcheck.quantities.scopes import HoldEntry
+from setupcheck.quantities.shop import Floor
+from setupcheck.quantities.typical import typical
+
+
+def datum_state(floor: Floor, key: str) -> str | None:
+    """stock, made, rough, not-yet-made, cut-away or same-holding. Source: the order of the route."""
+    found = floor.datums.get(key)
+    return found.state if found is not None else None
+
+
+def tilt_datums(floor: Floor, setup: Setup) -> float | None:
+    """How many things rule the lean of the part in this hold. Source: a rigid body squares on one thing only."""
+    count = floor.tilt_datums.get(setup.op)
+    return float(count) if count is not None else None
+
+
+def error_stated(entry: HoldEntry, key: str) -> str | Open:
+    """measured, stated or typical; Open with the path where nothing is said. Source: the job file."""
+    given = entry.error
+    if given is None:
+        if entry.step in ("centre", "and_centre") and getattr(entry.entry, "x", None) is not None:
+            return "stated"
+        return Open((f"{key}.{entry.key}",))
+    if given.measured is not None:
+        return "measured"
+    return "stated" if given.at_most is not None else "typical"
+
+
+def direction_known(floor: Floor, key: str, entry: HoldEntry) -> str | None:
+    """known or no-mark for a reading that names its high spot; None where no direction is named. Source: the job file."""
+    given = entry.error
+    return floor.directions.get(key) if given is not None and given.high_at is not None else None
+
+
+def measured(entry: HoldEntry) -> float | None:
+    """Measured error, where a plan stands beside it. Source: the job file."""
+    given = entry.error
+    return abs(given.measured) if given is not None and given.measured is not None and given.at_most is not None else None
+
+
+def planned(entry: HoldEntry) -> float | None:
+    """Planned bound of the same error. Source: the job file."""
+    return entry.error.at_most if entry.error is not None else None
+
+
+def measured_u(entry: HoldEntry) -> float | None:
+    """Standard uncertainty of the measured error. Source: the job file; an expanded one is halved (k = 2)."""
+    return entry.error.u if entry.error is not None else None
+
+
+def clearance_share(entry: HoldEntry, path: str, results: tuple[Result, ...]) -> float | None:
+    """Largest share a clearance of this hold has in the tightest stack it enters.
+
+    The tightest is the stack with the least margin over its limit.  Source: derived from the ledger.
+    """
+    if getattr(entry.entry, "clearance", None) is None:
+        return None
+    mine = f"{path}.clearance"
+    best: tuple[float, float] | None = None
+    for result in results:
+        share = sum(s.share for s in result.combined.shares if mine in s.cause.paths)
+        margin = result.margin_share
+        if share > 0.0 and margin is not None and (best is None or margin < best[0]):
+            best = (margin, share)
+    return best[1] if best is not None else None
+
+
+def reach(floor: Floor, key: str) -> float | None:
+    """How far a cut lies outside its two centring planes, over their distance: the lever that magnifies their errors.
+
+    max over both ends of the distance to the nearer plane / distance of the planes; 0 between them.
+    None where the part is squared by a face.  Source: straight line through two points, derived here.
+    """
+    op, _, name = key.partition("/")
+    planes = floor.planes.get(int(op))
+    if planes is None:
+        return None
+    low, high = sorted(planes)
+    for states in floor.bodies[floor.part_of[int(op)]].states.values():
+        for state in states:
+            if state.op == int(op) and state.name == name.rpartition(".")[2]:
+                outside = max(low - state.low, state.high - high, 0.0)
+                return outside / (high - low)
+    return None
+
+
+def machine_error_stated(floor: Floor, setup: Setup) -> str | Open | None:
+    """stated or typical for the machine's own axis; Open where no machine is named. Source: the job file."""
+    if setup.join is not None:
+        return None
+    name, machine = machine_of(floor.loaded, setup)
+    if machine is None:
+        return Open((f"setups.{setup.op}.machine",))
+    given = machine.axis_runout
+    if given is not None and (given.at_most is not None or given.measured is not None):
+        return "stated"
+    return "typical" if typical(machine.kind, "axis") is not None else Open((f"machines.{name}.axis_runout",))
+
+
+def _divided(floor: Floor, setup: Setup) -> tuple[str, int, int | None] | None:
+    """(surface, count, worm ratio) of what a setup divides; None where it divides nothing."""
+    for name in setup.cut:
+        ref = floor.loaded.ref(name, setup.part)
+        node = floor.loaded.job.parts[ref.part].surfaces[ref.surface]
+        count = getattr(node, "count", 1)
+        if count > 1:
+            _, machine = machine_of(floor.loaded, setup)
+            return name, count, machine.worm_ratio if machine is not None else None
+    return None
+
+
+def left_over(floor: Floor, setup: Setup) -> float | Open | None:
+    """Part of a hole left over by one step on the chosen circle, 0 where it closes. Source: exact fractions.
+
+    turns = ratio / count; holes = turns x circle; left over = distance to the next whole hole.
+    """
+    found = _divided(floor, setup)
+    if found is None or setup.divide is None or setup.divide.by != "hole-circle":
+        return None
+    _, count, ratio = found
+    missing = tuple(path for value, path in ((setup.divide.circle, f"setups.{setup.op}.divide.circle"),
+                                             (ratio, f"machines.{setup.machine}.worm_ratio")) if value is None)
+    if missing:
+        return Open(missing)
+    assert ratio is not None and setup.divide.circle is not None
+    return holes_left_over(ratio, count, setup.divide.circle)
+
+
+def folded_harmonic(floor: Floor, setup: Setup) -> float | None:
+    """min(N mod z, z - N mod z): waves round the work left by an error that comes once per crank turn.
+
+    None where the head has no such error stated.  Source: aliasing, derived here; N = 40, z = 39 or 41 gives 1.
+    """
+    found = _divided(floor, setup)
+    worm = setup.divide.worm if setup.divide is not None else None
+    if found is None or worm is None or not worm.once_per_crank or found[2] is None:
+        return None
+    return float(folded(found[2], found[1]))
+
+
+def step_error(floor: Floor, setup: Setup) -> float | None:
+    """Largest error of a setting rounded to the readout's step [rad]; absolute angles, so nothing adds up. Source: arithmetic."""
+    found = _divided(floor, setup)
+    if found is None or setup.divide is None or not setup.divide.step:
+        return None
+    return max(abs(e) for e in rounded_settings(found[1], setup.divide.step))
+
+
+def setting_error(setup: Setup) -> float | None:
+    """Stated error of one setting [rad]. Source: the job file."""
+    return setup.divide.setting if setup.divide is not None else None
+
+
+def division_stated(floor: Floor, setup: Setup) -> str | Open | None:
+    """stated where the dividing device's own error is; Open with the key to fill. Source: the job file."""
+    if _divided(floor, setup) is None:
+        return None
+    if setup.divide is None:
+        return Open((f"setups.{setup.op}.divide",))
+    if setup.divide.wheel is None and setup.divide.setting is None:
+        return Open((f"setups.{setup.op}.divide.wheel",))
+    return "stated"
+
+
+def nominal_gap(floor: Floor) -> float | Open | None:
+    """How far the drawn sizes alone leave the tooth mid-plane from the worm's axis [mm], without any error.
+
+    |z_teeth - (z_face + facing L)| with all shims at their middle sizes.  Source: arithmetic on the drawing.
+    """
+    job = floor.loaded.job
+    if job.place is None or job.place.worm_axis is None or job.mesh is None:
+        return None
+    teeth, face = floor.now(floor.loaded.ref(job.mesh.wheel)), floor.now(floor.loaded.ref(job.place.worm_axis.from_))
+    if teeth is None or face is None:
+        return Open(("mesh.wheel" if teeth is None else "place.worm_axis.from",), "it is never made in this route")
+    if floor.body(teeth.part) is not floor.body(face.part):
+        return Open(("setups",), f"{teeth.ref} and {face.ref} are never joined in this route")
+    length = job.place.worm_axis.length
+    middle = length.value + ((length.lower or 0.0) + (length.upper or 0.0)) / 2.0
+    return abs(teeth.z - face.z - face.facing * middle)

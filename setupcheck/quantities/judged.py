@@ -1,0 +1,154 @@
+"""Figures of stacks and of stock, combined and set against their limits. Base units mm, rad; shares are fractions."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+from setupcheck.ledger.combine import Combined, Draws, combine
+from setupcheck.ledger.figures import Figure
+from setupcheck.quantities.book import Open
+from setupcheck.quantities.scopes import CutEntry
+from setupcheck.quantities.shop import Floor
+from setupcheck.quantities.stacks import Built, Stack, build, stock_left
+
+THINNEST_CUT = 0.02
+"""Radial stock a turning tool still cuts rather than rubs [mm]. Source: our screening choice; say `finishing_cut` at the cut."""
+
+
+@dataclass(frozen=True, slots=True)
+class Result:
+    """One stack, combined: what rules, gates and remedies look at."""
+
+    stack: Stack
+    combined: Combined
+    figure: Figure
+
+    @property
+    def margin(self) -> float | None:
+        """Distance of the worst case from the nearer limit, negative outside [base unit]; None without a limit."""
+        c, s = self.combined, self.stack
+        ends = [s.high - c.worst.high] if s.high is not None else []
+        ends += [c.worst.low - s.low] if s.low is not None else []
+        return min(ends, default=None)
+
+    @property
+    def margin_share(self) -> float | None:
+        """Margin over the limit; over half the span where there are two limits."""
+        s, margin = self.stack, self.margin
+        if margin is None:
+            return None
+        if s.low is not None and s.high is not None:
+            scale = (s.high - s.low) / 2.0
+        else:
+            scale = abs(s.high if s.high is not None else s.low or 0.0)
+        return margin / scale if scale > 0.0 else None
+
+
+def floor(floor: Floor) -> Floor:
+    """The walked route."""
+    return floor
+
+
+def draws() -> Draws:
+    """Random values of all causes, one stream per cause. Source: JCGM 101:2008."""
+    return Draws()
+
+
+def requirements(floor: Floor) -> float | None:
+    """Number of requirements; None for a job with neither teeth nor a joint, which needs none."""
+    job = floor.loaded.job
+    toothed = any(s.kind == "teeth" for p in job.parts.values() for s in p.surfaces.values())
+    joined = any(setup.join is not None for setup in job.setups)
+    return float(len(job.require)) if toothed or joined else None
+
+
+def built(floor: Floor, stack: Stack) -> Built | Open:
+    """The figure a requirement asks for, from the accounts of both surfaces; open with what is missing.
+
+    relation of G about R = account of G - account of R at the same height.  Source: derived here (design of the ledger).
+    """
+    return build(floor, stack)
+
+
+def combined(built: Built, stack: Stack, floor: Floor, draws: Draws) -> Result:
+    """Worst case |sum of known vectors| + sum |coefficient| bound; rss; likely value and chance by Monte Carlo.
+
+    Source: worst case and rss common practice; Monte Carlo JCGM 101:2008.
+    """
+    job = floor.loaded.job
+    found = combine(built.figure, draws, low=stack.low, high=stack.high, confidence=job.confidence)
+    return Result(stack, found, built.figure)
+
+
+def worst(result: Result) -> float | None:
+    """|vector sum of known means| + sum of |coefficient| times bound, upper end. Source: arithmetic stacking, common practice."""
+    return result.combined.worst.high if result.stack.high is not None else None
+
+
+def limit(stack: Stack) -> float | None:
+    """Upper limit of the requirement. Source: the job file."""
+    return stack.high
+
+
+def lowest(result: Result) -> float | None:
+    """Lower end of the worst case. Source: arithmetic stacking, common practice."""
+    return result.combined.worst.low if result.stack.low is not None else None
+
+
+def low_limit(stack: Stack) -> float | None:
+    """Lower limit of the requirement. Source: the job file."""
+    return stack.low
+
+
+def rss(result: Result) -> float:
+    """Root of the summed squares of the same pushes. Source: common practice; a plain rms for eccentricities, never judged."""
+    c = result.combined
+    return c.rss.low if c.end == "low" else c.rss.high
+
+
+def likely(result: Result) -> float:
+    """Monte Carlo value that is not passed at the job's confidence. Source: JCGM 101:2008."""
+    c = result.combined
+    return c.likely.low if c.end == "low" else c.likely.high
+
+
+def chance(result: Result) -> float | None:
+    """Probability of meeting the limits. Source: JCGM 101:2008; sampling error sqrt(p (1 - p) / n)."""
+    return result.combined.chance
+
+
+def confidence(floor: Floor) -> float:
+    """Confidence the job asks for. Source: the job file; 95 % where it says nothing (our screening choice)."""
+    return floor.loaded.job.confidence
+
+
+def margin_share(result: Result) -> float | None:
+    """Margin of the worst case over the limit (half the span between two limits). Source: arithmetic."""
+    return result.margin_share
+
+
+def second_order(built: Built, stack: Stack) -> float | None:
+    """L t^2 / 2 over the limit: what a first-order treatment leaves out. Source: cosine series, derived here."""
+    scale = (stack.high - stack.low) if stack.high is not None and stack.low is not None else stack.high or stack.low
+    if not scale or stack.unit in ("arcsec",):
+        return None
+    return built.second_order / scale
+
+
+def stock_built(floor: Floor, key: str) -> Built | Open | None:
+    """Stock a cut meets: half the difference of diameters (or the axial distance of faces) less the offset of old and new.
+
+    leave/2 - e - |t| lever.  Source: geometry, derived here.
+    """
+    return stock_left(floor, key) if key in floor.stock else None
+
+
+def least_stock(built: Built, draws: Draws, entry: CutEntry) -> float:
+    """Worst-case stock at the thinnest place, form error of the old surface taken off. Source: geometry, derived here."""
+    found = combine(built.figure, draws, low=0.0, high=None, confidence=0.95)
+    return found.worst.low - (entry.cut.form or 0.0)
+
+
+def finishing_cut(entry: CutEntry) -> float:
+    """Thinnest cut the tool still takes: as stated, else a screening value. Source: the job file or our screening choice."""
+    return entry.cut.finishing_cut if entry.cut.finishing_cut is not None else THINNEST_CUT

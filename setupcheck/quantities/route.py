@@ -1,0 +1,255 @@
+"""The walk along the route: every setup held, cut or joined in order, so that each surface inherits its causes. mm, rad."""
+
+from __future__ import annotations
+
+from dataclasses import replace
+
+from setupcheck.jobfile.models import Deviation, Machine, Toothing
+from setupcheck.jobfile.names import MACHINE_KINDS
+from setupcheck.jobfile.reading import LoadedJob
+from setupcheck.jobfile.setups import Cut, Join, Setup
+from setupcheck.ledger import route
+from setupcheck.ledger.account import Account
+from setupcheck.ledger.causes import Cause
+from setupcheck.ledger.route import Placing, Seat, State
+from setupcheck.quantities.bought import surfaces_as_bought
+from setupcheck.quantities.causes import Entry, Towards, Turned, length_error, play, run_out, size_error
+from setupcheck.quantities.dividing import divided, table_turn
+from setupcheck.quantities.holding import Held, held_placing
+from setupcheck.quantities.shop import Body, Floor, outline, tooth_pattern, unknown_surface
+
+
+def walk(loaded: LoadedJob) -> Floor:
+    """Every surface of the job with everything it inherits.
+
+    Raises: JobError for what can only be seen along the way (a direction that names a tooth not yet cut, …).
+    """
+    job, floor = loaded.job, Floor(loaded)
+    for name, part in job.parts.items():
+        body = floor.bodies[name] = Body(name)
+        for state in surfaces_as_bought(name, part, _cut_here(loaded, name), _worm_angle(loaded, name)):
+            body.add(state)
+    for setup in job.setups:
+        if setup.join is not None:
+            _join(floor, setup, setup.join)
+        else:
+            _hold_and_cut(floor, setup)
+    return floor
+
+
+def _cut_here(loaded: LoadedJob, part: str) -> frozenset[str]:
+    refs = (loaded.ref(name, setup.part) for setup in loaded.job.setups for name in setup.cut)
+    return frozenset(ref.surface for ref in refs if ref.part == part)
+
+
+def _worm_angle(loaded: LoadedJob, part: str) -> float | None:
+    """Pressure angle that the worm gives to the wheel's teeth [rad], for the part the mesh names."""
+    mesh, worm = loaded.job.mesh, loaded.job.worm
+    if mesh is None or worm is None or loaded.ref(mesh.wheel).part != part:
+        return None
+    return worm.pressure_angle
+
+
+def machine_of(loaded: LoadedJob, setup: Setup) -> tuple[str | None, Machine | None]:
+    """(name, record) of a setup's machine; a machine called by its kind has a record without figures."""
+    name = setup.machine
+    if name is None:
+        return None, None
+    found = loaded.job.machines.get(name)
+    if found is None and name in MACHINE_KINDS:
+        found = Machine.model_validate({"kind": name})
+    return name, found
+
+
+def _hold_and_cut(floor: Floor, setup: Setup) -> None:
+    first = floor.loaded.ref(next(iter(setup.cut)), setup.part)
+    held = Held(floor, setup, floor.body(first.part), first.part)
+    if setup.keeps is not None:
+        placing = floor.placings.get(setup.keeps)
+        if placing is None:
+            raise floor.problem(f"setups.{setup.op}.keeps", f"operation {setup.keeps} holds nothing",
+                                "Write the op whose holding was never opened")
+    else:
+        assert setup.hold is not None
+        placing = held_placing(held, setup.hold)
+    floor.placings[setup.op] = placing
+    floor.part_of[setup.op] = held.part
+    for name, cut in setup.cut.items():
+        _cut(floor, held, placing, name, cut)
+    for cut in setup.cut.values():
+        for gone in cut.removes:
+            ref = held.ref(gone)
+            floor.removed[ref.part, ref.surface] = setup.op
+
+
+def _cut(floor: Floor, held: Held, placing: Placing, name: str, cut: Cut) -> None:
+    loaded, setup, op = floor.loaded, held.setup, held.setup.op
+    ref = held.ref(name)
+    if floor.body(ref.part) is not held.body:
+        raise floor.problem(f"setups.{op}.cut.{name}", f"{ref} is not on the part held here",
+                            "Write a setup of its own for it, or join the parts first")
+    node = loaded.job.parts[ref.part].surfaces[ref.surface]
+    before = held.body.now(ref)
+    drawn = before if before is not None else unknown_surface(
+        ref.part, ref.surface, node, f"setups.{op}", _worm_angle(loaded, ref.part))
+    if before is None:
+        ends = sorted((floor.z(ref.part, drawn.low), floor.z(ref.part, drawn.high)))
+        drawn = replace(drawn, low=ends[0], high=ends[1], facing=drawn.facing * floor.sense(ref.part))
+    target = _as_cut(drawn, cut, outline(node).diameter, floor.z(ref.part, outline(node).low),
+                     floor.z(ref.part, cut.to) if cut.to is not None else None)
+    error, turn = _machine_error(floor, setup, ref.surface), Account()
+    if target.pattern is not None:
+        fresh = tooth_pattern(node, _worm_angle(loaded, ref.part))
+        assert fresh is not None
+        _, machine = machine_of(loaded, setup)
+        pattern = divided(fresh, setup.divide, cut, op=op, name=name, turn=placing.sg,
+                          worm_ratio=machine.worm_ratio if machine is not None else None)
+        target = replace(target, pattern=pattern)
+        turn = table_turn(cut, op=op, name=name, radius=fresh.radius)
+    state = route.cut(placing, replace(target, op=op), machine_offset=error, machine_lean=Account(),
+                      dial=_dial(setup, cut, name, isinstance(node, Toothing)), index=turn)
+    source = before if before is not None else held.body.now(held.ref(cut.from_surface)) if cut.from_surface else None
+    if source is not None:
+        floor.stock[f"{op}/{name}"] = (source, state)
+    held.body.add(state)
+    floor.removed.pop((ref.part, ref.surface), None)
+
+
+def _as_cut(state: State, cut: Cut, drawn_diameter: float | None, drawn_low: float, to: float | None) -> State:
+    """Shape that this cut leaves: its drawing size, `to` (a face: its position), or with the stock that is left on."""
+    low, high, diameter = state.low, state.high, drawn_diameter
+    if state.kind == "face":
+        low = high = to if to is not None else drawn_low + state.facing * (cut.leave or 0.0)
+    elif diameter is not None:
+        outward = -1.0 if state.kind == "bore" else 1.0
+        left = cut.leave_on_diameter if cut.leave_on_diameter is not None else 2.0 * (cut.leave_on_radius or cut.leave or 0.0)
+        diameter = cut.to if cut.to is not None else diameter + outward * left
+    return replace(state, low=low, high=high, diameter=diameter, rough=cut.state == "rough")
+
+
+def _dial(setup: Setup, cut: Cut, name: str, teeth: bool) -> Account:
+    """Length error of this cut; teeth may have it stated with the mid-plane of the head."""
+    op, path, given = setup.op, f"setups.{setup.op}.cut.{name}.error", cut.error
+    words = f"op {op}, {name}: length by dial"
+    if teeth and given is None and setup.head is not None and setup.head.mid_plane is not None:
+        given, path = setup.head.mid_plane.error, f"setups.{op}.head.mid_plane.error"
+        words = f"op {op}, {name}: mid-plane found {setup.head.mid_plane.found.replace('-', ' ')}"
+    return length_error(given, Entry(words, op, path, "dial"))
+
+
+def _machine_error(floor: Floor, setup: Setup, name: str) -> Account:
+    """Error motion of the machine's own axis, new for each cut [mm]."""
+    called, machine = machine_of(floor.loaded, setup)
+    op = setup.op
+    if machine is None:
+        return Account.of(Cause(f"op {op}, {name}: axis of the machine", "undetermined", op, missing=f"setups.{op}.machine"))
+    path = f"machines.{called}.axis_runout" if called in floor.loaded.job.machines else f"setups.{op}.machine"
+    given = machine.axis_runout
+    if given is None:
+        given = Deviation(device=machine.kind)
+    entry = Entry(f"op {op}, {name}: axis of {called}", op, path, machine.kind, "axis")
+    return run_out(given, entry, inside=False, towards=Towards(), turned=Turned())
+
+
+def _join(floor: Floor, setup: Setup, join: Join) -> None:
+    """The inner part and all that hangs on it come into the frame of the outer one."""
+    loaded, op = floor.loaded, setup.op
+    outer, inner = loaded.ref(join.outer), loaded.ref(join.inner)
+    body, other = floor.body(outer.part), floor.body(inner.part)
+    if body is other:
+        raise floor.problem(f"setups.{op}.join", f"{outer.part} and {inner.part} are one piece already",
+                            "Write another outer or inner surface, or drop this step")
+    bore, journal = body.now(outer), other.now(inner)
+    for ref, state, key in ((outer, bore, "outer"), (inner, journal, "inner")):
+        if state is None:
+            raise floor.problem(f"setups.{op}.join.{key}", f"{ref} is not made yet when operation {op} joins it",
+                                "Cut it in an earlier operation, or say what is `given` of the bought part")
+    assert bore is not None and journal is not None
+    face, shoulder, middle, spacer = _contact_faces(floor, setup, join, body, other)
+    sense, shift = 1, bore.z - journal.z
+    if face is not None and shoulder is not None:
+        sense = 1 if face.facing == -shoulder.facing else -1
+        shift = face.z + face.facing * middle - sense * shoulder.z
+    seat = Seat(sense, shift, join.mounted_at)
+    turned = Cause(f"op {op}, angle at which {outer.part} was put on {inner.part}", "ring", op, high=1.0, mode="derived")
+
+    def moved(state: State, offset: Account, lean: Account, axial: Account) -> State:
+        clock = Account.of(Cause(f"op {op}: where the parts are clocked", "undetermined", op,
+                                 missing=f"setups.{op}.join.mounted_at")).along(1) if join.mounted_at is None else Account()
+        return route.joined(state, seat, offset=offset, lean=lean, axial=axial, clock=clock, unknown=turned)
+
+    still = Account()
+    lean = _joint_lean(op, join, bore, moved(journal, still, still, still), face,
+                       moved(shoulder, still, still, still) if shoulder is not None else None)
+    level = moved(journal, still, lean, still)
+    offset = bore.axis_at(bore.z) - _fit_error(op, join, bore) - level.axis_at(bore.z)
+    axial = Account.of(Cause(f"op {op}: where the joint is stopped", "undetermined", op, missing=f"setups.{op}.join.stop")).along(1)
+    if face is not None and shoulder is not None:
+        met = moved(shoulder, offset, lean, still)
+        radius = min(d / 2.0 for d in (face.diameter, shoulder.diameter) if d) if face.diameter or shoulder.diameter else 0.0
+        lift = Account()
+        if join.square != "shoulder":
+            if radius:
+                lift = Account.of(route.high_point(f"op {op}, {outer.part} on {inner.part}: faces meet at the high point",
+                                                   face=face, lean=met.lean, radius=radius, op=op))
+            else:
+                lift = Account.of(Cause(f"op {op}, {outer.part} on {inner.part}: where the faces touch", "undetermined", op,
+                                        missing=f"parts.{inner.part}.surfaces.{shoulder.name}.diameter")).along(1)
+        axial = face.axial + (spacer + lift) * float(face.facing) - met.axial
+    for states in other.states.values():
+        for state in states:
+            body.add(moved(state, offset, lean, axial))
+    for name in (name for name, old in floor.bodies.items() if old is other):
+        own, way = floor.frames.get(name, (1, 0.0))
+        floor.frames[name] = (sense * own, sense * way + shift)
+    for name, old in floor.bodies.items():
+        if old is other:
+            floor.bodies[name] = body
+
+
+def _contact_faces(floor: Floor, setup: Setup, join: Join, body: Body, other: Body
+                   ) -> tuple[State | None, State | None, float, Account]:
+    """(outer's face, inner's face, length of the spacers between them, its error); None where no stop is stated."""
+    if join.stop is None:
+        return None, None, 0.0, Account()
+    path = f"setups.{setup.op}.join.stop"
+    if join.stop.against is None:
+        raise floor.problem(path, "this joint does not say what it stops against", "Write against: spindle.shoulder")
+    on, against = floor.loaded.ref(join.stop.on), floor.loaded.ref(join.stop.against)
+    face, shoulder = body.now(on), other.now(against)
+    for ref, state, key in ((on, face, "on"), (against, shoulder, "against")):
+        if state is None or not state.facing:
+            raise floor.problem(f"{path}.{key}", f"{ref} is no face that is there when operation {setup.op} joins",
+                                f"Write a finished face of the {'outer' if key == 'on' else 'inner'} part")
+    middle, error = 0.0, Account()
+    for i, spacer in enumerate(join.stop.spacers):
+        length, one = size_error(spacer.length, Entry(f"op {setup.op}, {spacer.name}", setup.op, f"{path}.spacers.{i}.length", ""))
+        middle, error = middle + length, error + one
+    if join.stop.error is not None:
+        error += length_error(join.stop.error, Entry(f"op {setup.op}, seating of {on.surface}", setup.op, f"{path}.error", ""))
+    return face, shoulder, middle, error
+
+
+def _joint_lean(op: int, join: Join, bore: State, journal: State, face: State | None, shoulder: State | None) -> Account:
+    """tau: the lean the inner frame takes on, from the long fit (`bore`) or from the faces (`shoulder`)."""
+    if join.square == "bore":
+        return bore.lean - journal.lean
+    if join.square == "shoulder" and face is not None and shoulder is not None:
+        return face.lean - shoulder.lean
+    missing = f"setups.{op}.join.{'stop' if join.square == 'shoulder' else 'square'}"
+    return Account.of(Cause(f"op {op}: how the joint leans", "undetermined", op, missing=missing))
+
+
+def _fit_error(op: int, join: Join, bore: State) -> Account:
+    """epsilon of a joint: none for an interference fit, the play of a sliding one, or what the planner states."""
+    total, path = Account(), f"setups.{op}.join"
+    name = f"op {op}, {bore.name} on its seat"
+    if join.clearance is not None or join.by == "slide":
+        total += play(join.clearance, Entry(f"{name}: clearance", op, f"{path}.clearance", join.by), rests=join.rests or "free")
+    if join.fit_error is not None or join.by in ("taper", "screw", "bond"):
+        total += run_out(join.fit_error, Entry(f"{name}: run-out", op, f"{path}.fit_error", join.by), inside=True,
+                         towards=Towards(), turned=Turned())
+    return total
+
+
+

@@ -1,0 +1,78 @@
+"""The things of a job that own numbers, in the order of the job."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+from setupcheck.jobfile.models import Deviation
+from setupcheck.jobfile.setups import Centre, Clock, Cut, Setup, Square, Stop
+from setupcheck.quantities.book import Scope
+from setupcheck.quantities.shop import Floor
+from setupcheck.quantities.stacks import Stack, read_stack
+
+
+@dataclass(frozen=True, slots=True)
+class HoldEntry:
+    """One entry of a hold: `30/centre`. `error` is its main error entry, None where it has none."""
+
+    step: str
+    entry: Centre | Square | Stop | Clock
+
+    @property
+    def key(self) -> str:
+        """Key of the main error entry."""
+        return {"square": "face_runout", "stop": "error", "clock": "error"}.get(self.step, "runout")
+
+    @property
+    def error(self) -> Deviation | None:
+        return getattr(self.entry, self.key, None)
+
+
+@dataclass(frozen=True, slots=True)
+class CutEntry:
+    """One surface cut in one setup: `30/teeth`."""
+
+    name: str
+    cut: Cut
+
+
+def scopes(floor: Floor) -> list[Scope]:
+    """All scopes: the job, its place, each setup with its hold entries and cuts, each joining, each stack."""
+    loaded, job = floor.loaded, floor.loaded.job
+    whole = Scope("job", "", floor, "", line=1)
+    found = [whole]
+    if job.place is not None:
+        found.append(Scope("place", "", job.place, "place", line=loaded.line("place"), within=(whole,)))
+    for setup in job.setups:
+        found += _setup_scopes(floor, setup, whole)
+    seen: dict[str, int] = {}
+    for i in range(len(job.require)):
+        stack = read_stack(floor, i)
+        seen[stack.name] = seen.get(stack.name, 0) + 1
+        key = stack.name if seen[stack.name] == 1 else f"{stack.name}-{seen[stack.name]}"
+        found.append(Scope("stack", key, stack, f"require.{i}", line=loaded.line(f"require.{i}"), within=(whole,)))
+    return found
+
+
+def _setup_scopes(floor: Floor, setup: Setup, whole: Scope) -> list[Scope]:
+    line, op, path = floor.loaded.line, setup.op, f"setups.{setup.op}"
+    here = Scope("setup", str(op), setup, path, op, line(path), (whole,))
+    found = [here]
+    if setup.join is not None:
+        found.append(Scope("join", str(op), setup.join, f"{path}.join", op, line(f"{path}.join"), (here,)))
+    if setup.hold is not None:
+        for step in ("centre", "and_centre", "square", "stop", "clock"):
+            entry = getattr(setup.hold, step)
+            if entry is not None:
+                where = f"{path}.hold.{step}"
+                found.append(Scope("hold", f"{op}/{step}", HoldEntry(step, entry), where, op, line(where), (here,)))
+    for name, cut in setup.cut.items():
+        where = f"{path}.cut.{name}"
+        found.append(Scope("cut", f"{op}/{name}", CutEntry(name, cut), where, op, line(where), (here,)))
+    return found
+
+
+def stack_of(scope: Scope) -> Stack:
+    """The stack a scope of that kind holds."""
+    assert isinstance(scope.node, Stack)
+    return scope.node

@@ -1,0 +1,351 @@
+"""From a requirement to its figure: what is asked, between which surfaces, in which unit, with which limits. mm, rad."""
+
+from __future__ import annotations
+
+import math
+from collections.abc import Callable
+from dataclasses import dataclass
+
+from setupcheck.jobfile.models import Require
+from setupcheck.jobfile.names import Ref
+from setupcheck.ledger import figures, route
+from setupcheck.ledger.account import Account
+from setupcheck.ledger.figures import Figure
+from setupcheck.ledger.route import State
+from setupcheck.physics.gear_grades import LIMITS, grade_limit
+from setupcheck.quantities.book import Open
+from setupcheck.quantities.causes import Entry, size_error
+from setupcheck.quantities.shop import Floor
+
+NOT_YET = ("backlash", "contact-length", "contact-area", "torque")
+"""Figures a job file may ask for that this version does not compute; their findings are open."""
+
+
+@dataclass(frozen=True, slots=True)
+class Stack:
+    """One requirement with its instance name and how it is shown.
+
+    unit   display unit (um, mm, arcsec);  kind "length" or "angle" of its limits
+    low, high  limits in base units (mm or rad), None where there is none
+    """
+
+    name: str
+    index: int
+    require: Require
+    unit: str
+    digits: int
+    low: float | None
+    high: float | None
+    of: str
+    about: str
+
+
+@dataclass(frozen=True, slots=True)
+class Built:
+    """A stack's figure, with the levers its first-order treatment rests on.
+
+    second_order  L t^2 / 2 with the worst lean and the longest lever [mm]
+    """
+
+    figure: Figure
+    second_order: float
+
+
+LENGTHS = {"run-out", "face-run-out", "coaxial", "cumulative-pitch", "single-pitch", "gap-centre-pitch", "on-workpiece",
+           "position", "chord", "pitch-circle", "mid-plane", "backlash", "backlash-swing", "length", "allowance"}
+ANGLES = {"index-range", "index-within"}
+
+
+def dimension_of(require: Require) -> str:
+    """Kind of unit a requirement's limits have: length, angle, torque or fraction."""
+    if require.what in LENGTHS or require.what == "squareness" and require.across is not None:
+        return "length"
+    if require.what in ANGLES or require.what == "squareness":
+        return "angle"
+    return "torque" if require.what == "torque" else "fraction"
+
+
+def read_stack(floor: Floor, index: int) -> Stack:
+    """Limits, unit and name of requirement `index`.
+
+    Raises: JobError where a limit has the wrong kind of unit, or a surface of the wrong kind is asked.
+    """
+    require, path = floor.loaded.job.require[index], f"require.{index}"
+    kind = dimension_of(require)
+    limits = {"at_most": require.at_most, "at_least": require.at_least}
+    if require.between is not None:
+        limits = {"between": require.between[0], "between ": require.between[1]}
+    for key, amount in limits.items():
+        # a bare number takes the file's units for lengths, as every size does
+        if amount is not None and amount.dimension != kind and not (kind == "fraction" and amount.dimension == "number"):
+            raise floor.problem(f"{path}.{key.strip()}", f"a limit of {require.what} is a {kind}, not a {amount.dimension}",
+                                f"Write it as in {_example(kind)}")
+    if require.between is not None:
+        low, high = require.between[0].value, require.between[1].value
+    else:
+        low = require.at_least.value if require.at_least is not None else None
+        high = require.at_most.value if require.at_most is not None else None
+    if require.grade is not None:
+        high = _grade(floor, require, path)
+    unit, digits = {"angle": ("arcsec", 1), "torque": ("N*m", 1), "fraction": ("%", 0)}.get(kind, ("um", 1))
+    if require.what in ("length", "backlash"):
+        unit, digits = "mm", 4
+    if require.what == "allowance":
+        unit, digits = "mm", 3
+    about = require.about or (floor.loaded.job.place.axis if floor.loaded.job.place is not None else None) or ""
+    of = require.of or (floor.loaded.job.mesh.wheel if floor.loaded.job.mesh is not None and require.what == "mid-plane" else "") or ""
+    name = require.name or ".".join(x for x in (require.what, of.replace(".", "-"), _short(about)) if x)
+    return Stack(name, index, require, unit, digits, low, high, of, about)
+
+
+def _short(text: str) -> str:
+    return text.replace(".", "-")
+
+
+def _example(kind: str) -> str:
+    return {"length": "40 um", "angle": '75"', "torque": "40 N m", "fraction": "25 %"}[kind]
+
+
+def _grade(floor: Floor, require: Require, path: str) -> float:
+    """Limit [mm] of ISO 1328-1:1995 or -2:1997 for a cylindrical gear of the stated grade."""
+    if require.what not in LIMITS:
+        raise floor.problem(f"{path}.grade", f"a grade says nothing about {require.what}", f"Write it for one of: {', '.join(LIMITS)}")
+    ref = floor.loaded.ref(require.of or "")
+    node = floor.loaded.job.parts[ref.part].surfaces[ref.surface]
+    module = getattr(node, "module", None)
+    if node.kind != "teeth" or module is None:
+        raise floor.problem(f"{path}.grade", "a grade needs the module of the teeth it speaks of", "Write module: 1.5 at the teeth")
+    assert require.grade is not None
+    try:
+        return grade_limit(require.what, module=module, reference_diameter=node.on_circle, grade=require.grade)  # type: ignore[union-attr]
+    except ValueError as why:
+        raise floor.problem(f"{path}.grade", str(why), "Write the limit itself: at_most: 40 um") from None
+
+
+def build(floor: Floor, stack: Stack) -> Built | Open:
+    """The figure of a stack, or Open with what is missing.
+
+    Raises: JobError where the surfaces cannot have such a figure.
+    """
+    if stack.require.what in NOT_YET:
+        return Open(because=f"{stack.require.what} is not computed by this version")
+    made = _FIGURES[stack.require.what](floor, stack)
+    if isinstance(made, Open):
+        return made
+    missing = made.figure.undetermined()
+    return Open(missing) if missing else made
+
+
+def _state(floor: Floor, stack: Stack, text: str, key: str) -> State | Open:
+    path = f"require.{stack.index}.{key}"
+    if not text:
+        return Open((path,))
+    ref = floor.loaded.ref(text)
+    state = floor.now(ref)
+    if state is None:
+        made = floor.now(Ref(ref.part, ref.surface))
+        if made is not None:
+            raise floor.problem(path, f"operation {ref.op} does not cut {ref.part}.{ref.surface}", "Write the op that cuts it after the @")
+        return Open((path,), f"{ref.part}.{ref.surface} is never made in this route")
+    return state
+
+
+def _pair(floor: Floor, stack: Stack) -> tuple[State, State] | Open:
+    """The surface asked about and the one it refers to, both in one piece."""
+    of, about = _state(floor, stack, stack.of, "of"), _state(floor, stack, stack.about, "about")
+    for state in (of, about):
+        if isinstance(state, Open):
+            return state
+    assert isinstance(of, State) and isinstance(about, State)
+    if floor.body(of.part) is not floor.body(about.part):
+        raise floor.problem(f"require.{stack.index}", f"{of.ref} and {about.ref} are never joined in this route",
+                            "Write the joining as a setup of its own")
+    return of, about
+
+
+def _second_order(*, lean: Account, lever: float) -> float:
+    """L t^2 / 2 for the worst lean [mm]: what the first-order treatment leaves out. Source: cosine series."""
+    worst = lean.largest()
+    return lever * worst**2 / 2.0 if math.isfinite(worst) else 0.0
+
+
+def _vector(floor: Floor, stack: Stack) -> Built | Open:
+    """run-out and coaxial: FIM = 2 |offset| at the worse end of the surface."""
+    pair = _pair(floor, stack)
+    if isinstance(pair, Open):
+        return pair
+    g, r = pair
+    at = stack.require.at
+    heights = (floor.z(g.part, at),) if at is not None else (
+        (g.low, g.high) if g.pattern is None and g.high > g.low else (g.z,))
+    accounts = tuple(g.axis_at(z) - r.axis_at(z) for z in heights)
+    lever = max(abs(z - r.z) for z in heights)
+    return Built(figures.Vector(accounts, 2.0), _second_order(lean=g.lean - r.lean, lever=max(lever, g.diameter or 0.0)))
+
+
+def _lean(floor: Floor, stack: Stack) -> Built | Open:
+    """face-run-out: lean x across; squareness: lean itself, or over a stated diameter."""
+    pair = _pair(floor, stack)
+    if isinstance(pair, Open):
+        return pair
+    g, r = pair
+    across = stack.require.across
+    if across is None and stack.require.what == "face-run-out":
+        across = g.diameter
+        if across is None:
+            return Open((f"require.{stack.index}.across",))
+    account = g.lean - r.lean
+    return Built(figures.Vector((account,), across or 1.0), _second_order(lean=account, lever=across or 0.0))
+
+
+def _teeth(floor: Floor, stack: Stack) -> Built | Open:
+    """Pitch figures of teeth and holes, and the index figures of a wheel."""
+    pair = _pair(floor, stack)
+    if isinstance(pair, Open):
+        return pair
+    g, r = pair
+    what, pattern = stack.require.what, g.pattern
+    if pattern is None:
+        raise floor.problem(f"require.{stack.index}.of", f"{g.ref} has no teeth or holes", "Write the name of a toothing")
+    flank = what not in ("gap-centre-pitch",) and g.kind == "teeth"
+    if flank and pattern.pressure_angle is None:
+        return Open((f"parts.{g.part}.surfaces.{g.name}.pressure_angle",))
+    factor = {"index-range": 1.0 / pattern.radius, "index-within": 0.5 / pattern.radius}.get(what, 1.0)
+    if what == "on-workpiece":
+        if stack.require.on_diameter is None:
+            return Open((f"require.{stack.index}.on_diameter",))
+        factor = stack.require.on_diameter / (2.0 * pattern.radius)
+    offset = g.offset - r.axis_at(g.z)
+    figure = figures.Tooth(offset, pattern, flank=flank, stepwise=what == "single-pitch", factor=factor)
+    return Built(figure, _second_order(lean=g.lean - r.lean, lever=abs(g.z - r.z)))
+
+
+def _backlash_swing(floor: Floor, stack: Stack) -> Built | Open:
+    """Change of backlash over one turn: 4 e tan(alpha)."""
+    pair = _pair(floor, stack)
+    if isinstance(pair, Open):
+        return pair
+    g, r = pair
+    if g.pattern is None or g.pattern.pressure_angle is None:
+        return Open((f"parts.{g.part}.surfaces.{g.name}.pressure_angle",))
+    offset = g.offset - r.axis_at(g.z)
+    return Built(figures.Vector((offset,), 4.0 * math.tan(g.pattern.pressure_angle)),
+                 _second_order(lean=g.lean - r.lean, lever=abs(g.z - r.z)))
+
+
+def _holes(floor: Floor, stack: Stack) -> Built | Open:
+    """position, chord and pitch-circle of a hole pattern."""
+    what = stack.require.what
+    g = _state(floor, stack, stack.of, "of")
+    if isinstance(g, Open):
+        return g
+    pattern = g.pattern
+    if pattern is None or g.kind == "teeth":
+        raise floor.problem(f"require.{stack.index}.of", f"{g.ref} is no pattern of holes", "Write the name of a hole pattern")
+    if what == "chord":
+        return Built(figures.HoleChord(pattern), 0.0)
+    if what == "pitch-circle":
+        return Built(figures.PitchCircle(pattern), 0.0)
+    pair = _pair(floor, stack)
+    if isinstance(pair, Open):
+        return pair
+    _, r = pair
+    turn = None
+    if stack.require.clock is not None:
+        key = _state(floor, stack, stack.require.clock, "clock")
+        if isinstance(key, Open):
+            return key
+        if key.pattern is None:
+            raise floor.problem(f"require.{stack.index}.clock", f"{key.ref} gives no angle", "Write a slot, hole pattern or toothing")
+        turn = g.clock - _angle_about(key, r)
+    return Built(figures.HolePosition(g.offset - r.axis_at(g.z), pattern, turn),
+                 _second_order(lean=g.lean - r.lean, lever=abs(g.z - r.z)))
+
+
+def _angle_about(key: State, axis: State) -> Account:
+    """Angle of a clocking feature about another axis [rad]: its own, and its tangential shift over its radius."""
+    assert key.pattern is not None
+    return route.clocked(key, axis.axis_at(key.z), at=key.pattern.angle(1), radius=key.pattern.radius)
+
+
+def _mid_plane(floor: Floor, stack: Stack) -> Built | Open:
+    """Distance of the worst tooth's middle from the worm's axis: axial stack and wobble."""
+    place = floor.loaded.job.place
+    if place is None or place.worm_axis is None:
+        return Open(("place.worm_axis",))
+    pair = _pair(floor, stack)
+    if isinstance(pair, Open):
+        return pair
+    g, r = pair
+    if g.pattern is None:
+        raise floor.problem(f"require.{stack.index}.of", f"{g.ref} has no teeth", "Write the name of a toothing")
+    face = _state(floor, stack, place.worm_axis.from_, "of")
+    if isinstance(face, Open):
+        return Open(("place.worm_axis.from",), face.because)
+    if not face.facing:
+        raise floor.problem("place.worm_axis.from", f"{face.ref} is no face", "Write the face the worm's axis is measured from")
+    if floor.body(face.part) is not floor.body(g.part):
+        raise floor.problem("place.worm_axis.from", f"{face.ref} and {g.ref} are never joined in this route",
+                            "Write the joining as a setup of its own")
+    middle, error = size_error(place.worm_axis.length, Entry("housing, face to worm axis", None, "place.worm_axis.length", ""))
+    sign = float(face.facing)
+    axial = g.axial - face.axial - error * sign
+    axial = axial.plus_constant(g.z - face.z - sign * middle)
+    lean = g.lean - r.lean
+    return Built(figures.MidPlane(axial, lean, g.pattern), _second_order(lean=lean, lever=g.pattern.radius))
+
+
+def _length(floor: Floor, stack: Stack) -> Built | Open:
+    """Axial distance of two faces, positive as drawn."""
+    pair = _pair(floor, stack)
+    if isinstance(pair, Open):
+        return pair
+    g, r = pair
+    way = 1.0 if g.z >= r.z else -1.0
+    account = (g.axial - r.axial) * way
+    lever = max((s.diameter or 0.0) for s in (g, r))
+    return Built(figures.Length(account.plus_constant(abs(g.z - r.z))), _second_order(lean=g.lean - r.lean, lever=lever))
+
+
+def _allowance(floor: Floor, stack: Stack) -> Built | Open:
+    """Radial stock left where the cut is thinnest."""
+    ref = floor.loaded.ref(stack.of)
+    ops = [int(key.partition("/")[0]) for key, (_, after) in floor.stock.items()
+           if (after.part, after.name) == (ref.part, ref.surface) and ref.op in (None, after.op)]
+    if not ops:
+        return Open((f"require.{stack.index}.of",), f"{ref} is cut out of nothing that is known: no earlier state of it")
+    key = next(k for k, (_, after) in floor.stock.items() if after.op == ops[-1] and (after.part, after.name) == (ref.part, ref.surface))
+    return stock_left(floor, key)
+
+
+def stock_left(floor: Floor, key: str) -> Built | Open:
+    """Least radial (or axial, for a face) stock of one cut (`40/bore`) [mm]."""
+    before, after = floor.stock[key]
+    if after.kind == "face":
+        depth = after.facing * (before.z - after.z)
+        axial = (before.axial - after.axial) * float(after.facing)
+        lean = before.lean - after.lean
+        radius = max((s.diameter or 0.0) / 2.0 for s in (before, after))
+        if missing := axial.undetermined() + lean.undetermined():
+            return Open(tuple(dict.fromkeys(missing)))
+        return Built(figures.FaceStock(axial.plus_constant(depth), lean, radius), 0.0)
+    if before.diameter is None or after.diameter is None:
+        return Open((f"setups.{after.op}.cut.{after.name}.to",))
+    depth = (before.diameter - after.diameter) / 2.0 * (-1.0 if after.kind == "bore" else 1.0)
+    low, high = max(before.low, after.low), min(before.high, after.high)
+    heights = (low, high) if high > low else (after.z,)
+    offsets = tuple(after.axis_at(z) - before.axis_at(z) for z in heights)
+    if missing := tuple(dict.fromkeys(m for o in offsets for m in o.undetermined())):
+        return Open(missing)
+    return Built(figures.Stock(depth, offsets), 0.0)
+
+
+_FIGURES: dict[str, Callable[[Floor, Stack], Built | Open]] = {
+    "run-out": _vector, "coaxial": _vector, "face-run-out": _lean, "squareness": _lean,
+    "cumulative-pitch": _teeth, "single-pitch": _teeth, "gap-centre-pitch": _teeth, "index-range": _teeth,
+    "index-within": _teeth, "on-workpiece": _teeth, "backlash-swing": _backlash_swing,
+    "position": _holes, "chord": _holes, "pitch-circle": _holes, "mid-plane": _mid_plane, "length": _length,
+    "allowance": _allowance,
+}
+
+

@@ -1,0 +1,82 @@
+"""All quantities of the foundation, one row each: family, instance, unit, formula, inputs. A new number is a new row."""
+
+from __future__ import annotations
+
+from setupcheck.quantities import holds, judged
+from setupcheck.quantities.book import Quantity
+
+ROUTE = (
+    Quantity("route.floor", "job", "", 0, judged.floor, {"floor": ":"}, "every surface with what it inherits"),
+    Quantity("route.draws", "job", "", 0, judged.draws, {}, "random values of all causes, drawn once"),
+    Quantity("job.requirements", "job", "1", 0, judged.requirements, {"floor": ":"},
+             "requirements stated by a job with teeth or a joint"),
+)
+
+STACK = (
+    Quantity("stack.built", "stack", "", 0, judged.built, {"floor": "route.floor", "stack": ":"}, "figure of the relation"),
+    Quantity("stack.combined", "stack", "", 0, judged.combined,
+             {"built": "stack.built", "stack": ":", "floor": "route.floor", "draws": "route.draws"},
+             "worst case, rss, likely and chance of the figure"),
+    Quantity("stack.worst", "stack", "stack", 1, judged.worst, {"result": "stack.combined"},
+             "worst case towards the upper limit"),
+    Quantity("stack.limit", "stack", "stack", 1, judged.limit, {"stack": ":"}, "upper limit"),
+    Quantity("stack.lowest", "stack", "stack", 1, judged.lowest, {"result": "stack.combined"},
+             "worst case towards the lower limit"),
+    Quantity("stack.floor", "stack", "stack", 1, judged.low_limit, {"stack": ":"}, "lower limit"),
+    Quantity("stack.rss", "stack", "stack", 1, judged.rss, {"result": "stack.combined"}, "root of the summed squares, never judged"),
+    Quantity("stack.likely", "stack", "stack", 1, judged.likely, {"result": "stack.combined"},
+             "value not passed at the job's confidence"),
+    Quantity("stack.chance", "stack", "%", 1, judged.chance, {"result": "stack.combined"}, "chance of meeting the limits"),
+    Quantity("stack.confidence", "stack", "%", 1, judged.confidence, {"floor": "route.floor"}, "confidence asked by the job"),
+    Quantity("stack.inside", "stack", "%", 1, judged.margin_share, {"result": "stack.combined"},
+             "margin left, as a share of the limit"),
+    Quantity("stack.second_order", "stack", "%", 2, judged.second_order, {"built": "stack.built", "stack": ":"},
+             "what the first-order treatment leaves out, as a share of the limit"),
+)
+
+HOLD = (
+    Quantity("datum.state", "hold", "", 0, holds.datum_state, {"floor": "route.floor", "key": "@key"},
+             "how the datum is found when the hold takes it"),
+    Quantity("hold.tilt_datums", "setup", "1", 0, holds.tilt_datums, {"floor": "route.floor", "setup": ":"},
+             "what rules the lean: exactly one face or second plane"),
+    Quantity("hold.error_stated", "hold", "", 0, holds.error_stated, {"entry": ":", "key": "@path"},
+             "whether the hold's error is measured, stated, typical or missing"),
+    Quantity("hold.direction_known", "hold", "", 0, holds.direction_known, {"floor": "route.floor", "key": "@key", "entry": ":"},
+             "whether a named direction could be used"),
+    Quantity("hold.within_plan", "hold", "um", 1, holds.measured, {"entry": ":"}, "measured error of the hold"),
+    Quantity("hold.planned", "hold", "um", 1, holds.planned, {"entry": ":"}, "planned bound of the hold's error"),
+    Quantity("hold.measured_u", "hold", "um", 2, holds.measured_u, {"entry": ":"}, "standard uncertainty of the measured error"),
+    Quantity("hold.clearance_share", "hold", "%", 0, holds.clearance_share,
+             {"entry": ":", "path": "@path", "results": "known stack.combined"},
+             "share of the clearance in the tightest stack it enters"),
+    Quantity("hold.reach", "cut", "1", 2, holds.reach, {"floor": "route.floor", "key": "@key"},
+             "farthest end of the cut from the nearer centring plane, over the distance of the planes"),
+    Quantity("machine.error_stated", "setup", "", 0, holds.machine_error_stated, {"floor": "route.floor", "setup": ":"},
+             "whether the machine's own error is stated, typical or missing"),
+)
+
+ALLOW = (
+    Quantity("allow.built", "cut", "", 0, judged.stock_built, {"floor": "route.floor", "key": "@key"}, "stock of one cut"),
+    Quantity("allow.least_stock", "cut", "mm", 3, judged.least_stock, {"built": "allow.built", "draws": "route.draws", "entry": ":"},
+             "stock left where the cut is thinnest, worst case"),
+    Quantity("allow.finishing_cut", "cut", "mm", 3, judged.finishing_cut, {"entry": ":"}, "thinnest cut the tool still takes"),
+)
+
+DIVIDE = (
+    Quantity("divide.left_over", "setup", "1", 3, holds.left_over, {"floor": "route.floor", "setup": ":"},
+             "part of a hole that one step leaves over"),
+    Quantity("divide.folded_harmonic", "setup", "1", 0, holds.folded_harmonic, {"floor": "route.floor", "setup": ":"},
+             "waves round the work that the head's once-per-crank error leaves"),
+    Quantity("divide.step_error", "setup", "arcsec", 2, holds.step_error, {"floor": "route.floor", "setup": ":"},
+             "largest error of a setting rounded to the readout's step"),
+    Quantity("divide.setting_error", "setup", "arcsec", 2, holds.setting_error, {"setup": ":"}, "error of one setting as stated"),
+    Quantity("divide.error_stated", "setup", "", 0, holds.division_stated, {"floor": "route.floor", "setup": ":"},
+             "whether the dividing method's errors are stated"),
+)
+
+PLACE = (
+    Quantity("place.nominal_gap", "place", "um", 1, holds.nominal_gap, {"floor": "route.floor"},
+             "how far the drawn sizes alone miss the worm's mid-plane"),
+)
+
+TABLES: tuple[Quantity, ...] = (*ROUTE, *STACK, *HOLD, *ALLOW, *DIVIDE, *PLACE)

@@ -1,0 +1,1 @@
+"""Reports of one review: text for the terminal, JSON for other programs."""

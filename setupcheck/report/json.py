@@ -1,0 +1,125 @@
+"""The review as JSON, format 1: fixed keys, metric display units (lengths mm, deviations um, small angles arcsec)."""
+
+from __future__ import annotations
+
+import json
+import math
+from typing import TYPE_CHECKING
+
+from setupcheck.notation import FACTOR
+from setupcheck.quantities.book import INCH, Known, Scope
+from setupcheck.quantities.judged import Result
+from setupcheck.quantities.scopes import stack_of
+from setupcheck.report.wording import clean
+from setupcheck.rulebook import Finding
+
+if TYPE_CHECKING:
+    from setupcheck.flow import Review
+
+FORMAT = 1
+METRIC = {shown: metric for metric, shown in INCH.items()}
+DIGITS = 12
+"""Significant digits of every number, so that the last bits of a sum cannot change the bytes. Source: our choice."""
+
+Value = float | int | str | None
+
+
+def as_json(found: Review) -> str:
+    """The whole report as one JSON object, keys in a fixed order, ending in a newline."""
+    return json.dumps(as_data(found), ensure_ascii=False, indent=1, allow_nan=False) + "\n"
+
+
+def as_data(found: Review) -> dict[str, object]:
+    """The report as plain data, ready for json."""
+
+    from setupcheck import __version__
+
+    job, house = found.loaded.job, found.house
+    return {
+        "format": FORMAT,
+        "setupcheck": __version__,
+        "rule_book": {"version": found.rulebook.version, "sha256": found.rulebook.sha256},
+        "house": {"sha256": house.sha256} if house is not None else None,
+        "job": {"title": clean(job.title), "file": found.loaded.file, "sha256": found.loaded.sha256},
+        "on": found.on,
+        "verdict": found.verdict,
+        "counts": {v: found.evaluation.counts[v] for v in ("pass", "warn", "fail", "open", "waived")},
+        "quantities": _quantities(found),
+        "stacks": [_stack(found, scope) for scope in found.book.instances("stack")],
+        "gates": [{"at": g.key, "op": g.op, "on": g.on, "reading": _shown(g.reading, "um"), "planned": _shown(g.planned, "um"),
+                   "unit": "um", "by": g.by} for g in found.gates],
+        "findings": [_finding(f) for f in found.evaluation.findings],
+        "cautions": [{"id": c.id, "op": c.op, "severity": c.severity, "state": clean(c.state), "text": c.text,
+                      "source": c.source} for c in found.evaluation.cautions],
+    }
+
+
+def _number(value: float) -> float:
+    """A finite number at 12 significant digits, never -0."""
+    return float(f"{value:.{DIGITS}g}") + 0.0 if math.isfinite(value) else 0.0
+
+
+def _shown(value: float | None, unit: str) -> float | None:
+    if value is None:
+        return None
+    return _number(value * FACTOR.get(METRIC.get(unit, unit), 1.0))
+
+
+def _ends(low: float, high: float, unit: str, *, signed: bool) -> object:
+    """A figure's worst, rss or likely: both ends of a signed figure, one number for those that start at zero."""
+    return {"low": _shown(low, unit), "high": _shown(high, unit)} if signed else _shown(high, unit)
+
+
+def _quantities(found: Review) -> dict[str, object]:
+    """Every quantity that the review looked at and that is a number or a word."""
+    out: dict[str, object] = {}
+    for (name, scope), answer in sorted(found.book.made.items(), key=lambda item: (item[0][0], item[0][1].key)):
+        if not isinstance(answer, Known) or isinstance(answer.value, bool) or not isinstance(answer.value, float | int | str):
+            continue
+        unit = METRIC.get(found.book.unit(name, scope), found.book.unit(name, scope))
+        value: Value = _shown(float(answer.value), unit) if isinstance(answer.value, float | int) else answer.value
+        out[f"{name}@{scope.key}" if scope.key else name] = {
+            "value": value, "unit": unit, "rests_on": sorted(answer.rests_on), "lines": [scope.line] if scope.line else []}
+    return out
+
+
+def _stack(found: Review, scope: Scope) -> dict[str, object]:
+    stack = stack_of(scope)
+    unit = METRIC.get(stack.unit, stack.unit)
+    head: dict[str, object] = {
+        "name": scope.key, "what": stack.require.what, "of": stack.of or None, "about": stack.about or None,
+        "limit": {"low": _shown(stack.low, unit), "high": _shown(stack.high, unit)}, "unit": unit}
+    result = found.results.get(scope.key)
+    if result is None:
+        return {**head, "worst": None, "rss": None, "likely": None, "chance": None, "chance_error": None, "causes": []}
+    return {**head, **_combined(result, unit)}
+
+
+def _combined(result: Result, unit: str) -> dict[str, object]:
+    c, signed = result.combined, result.figure.signed
+    return {
+        "worst": _ends(c.worst.low, c.worst.high, unit, signed=signed),
+        "rss": _ends(c.rss.low, c.rss.high, unit, signed=signed),
+        "likely": _ends(c.likely.low, c.likely.high, unit, signed=signed),
+        "chance": _number(c.chance) if c.chance is not None else None,
+        "chance_error": _number(c.chance_error) if c.chance_error is not None else None,
+        "causes": [{"cause": s.cause.key, "op": s.cause.op, "mode": s.cause.mode, "worst": _shown(s.worst, unit),
+                    "share": _number(s.share)} for s in c.shares],
+    }
+
+
+def _finding(f: Finding) -> dict[str, object]:
+    unit = METRIC.get(f.unit, f.unit)
+
+    def shown(value: object) -> object:
+        if isinstance(value, tuple):
+            return [shown(v) for v in value]
+        return _shown(float(value), unit) if isinstance(value, float | int) else value
+
+    return {
+        "rule": f.rule, "at": f.at, "op": f.op, "line": f.line, "verdict": f.verdict, "quantity": f.quantity,
+        "value": shown(f.value), "limit": shown(f.limit), "margin": shown(f.margin), "unit": unit,
+        "missing": list(f.missing), "message": clean(f.message), "remedy": f.remedy,
+        "sources": [{"ref": s.ref, "place": s.place, "kind": s.kind} for s in f.sources], "evidence": f.evidence,
+        "rests_on": list(f.rests_on), "waiver": clean(f.waiver) if f.waiver else None,
+    }

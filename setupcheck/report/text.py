@@ -1,0 +1,245 @@
+"""The review as text: verdict, what to stop and check, findings, requirements with their causes, gates, cautions."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator
+
+from setupcheck.flow import Review
+from setupcheck.ledger.combine import TRIALS
+from setupcheck.notation import show
+from setupcheck.quantities.book import Open, Scope
+from setupcheck.quantities.gates import Change, Gate
+from setupcheck.quantities.judged import Result
+from setupcheck.quantities.scopes import stack_of
+from setupcheck.report.wording import cause_in_words, clean, finer, in_unit, unit_of, wrap
+from setupcheck.rulebook import VERDICTS, CautionLine, Finding
+
+CAUTIONS_SHOWN = 5
+"""Cautions of one operation shown without --all. Source: our screening choice."""
+CAUSES_SHOWN = 3
+
+
+def as_text(found: Review, *, everything: bool = False) -> str:
+    """The whole report, 80 columns, without colour.
+
+    everything  passed findings, all causes and all cautions as well
+    """
+    lines: list[str] = []
+    for part in (_head(found), _stops(found), _findings(found, everything), _requirements(found, everything),
+                 _gates(found), _cautions(found, everything)):
+        block = list(part)
+        if block:
+            lines += [*block, ""]
+    lines += wrap(found.rulebook.closing_line)
+    return "\n".join(lines) + "\n"
+
+
+def counts(found: Review) -> str:
+    """`41 pass, 3 warn, 1 fail, 6 open, 1 waived`."""
+    numbers = found.evaluation.counts
+    return ", ".join(f"{numbers[v]} {v}" for v in ("pass", "warn", "fail", "open", "waived") if v in VERDICTS)
+
+
+def _head(found: Review) -> Iterator[str]:
+    job = found.loaded.job
+    name = f"{clean(job.job)}: {clean(job.title)}" if job.job else clean(job.title)
+    yield from wrap(name)
+    yield f"{found.verdict.upper()}   {counts(found)}"
+    unanswered = [c for c in found.evaluation.cautions if c.severity == "stop-and-check" and not c.answered]
+    if unanswered and found.evaluation.counts["fail"] == 0:
+        yield from wrap(f"Open until {_many(len(unanswered), 'stop-and-check caution is', 'stop-and-check cautions are')} "
+                        "answered under `checked` in the job file.")
+
+
+def _many(n: int, one: str, more: str) -> str:
+    return f"{n} {one if n == 1 else more}"
+
+
+def _stops(found: Review) -> Iterator[str]:
+    stops = [c for c in found.evaluation.cautions if c.severity == "stop-and-check"]
+    if stops:
+        yield "STOP AND CHECK"
+        for caution in stops:
+            yield from _caution(caution)
+
+
+def _caution(caution: CautionLine) -> Iterator[str]:
+    where = f"op {caution.op}" if caution.op is not None else "job"
+    because = f" ({clean(caution.because)})" if caution.because else ""
+    yield from wrap(f"{where}, {caution.id} [{clean(caution.state)}]: {caution.text}{because}", first="  ", rest="      ")
+
+
+def _findings(found: Review, everything: bool) -> Iterator[str]:
+    shown = [f for f in found.evaluation.findings if everything or f.verdict != "pass"]
+    if not shown:
+        return
+    yield "FINDINGS"
+    for finding in shown:
+        yield from _finding(found, finding)
+
+
+def _finding(found: Review, finding: Finding) -> Iterator[str]:
+    head = f"{finding.verdict}  {finding.rule}  {finding.at or 'job'}, line {finding.line}" if finding.line else (
+        f"{finding.verdict}  {finding.rule}  {finding.at or 'job'}")
+    yield from wrap(head, first="  ", rest="        ")
+    yield from wrap(clean(finding.message) + "." + _margin(finding), first="      ", rest="      ")
+    if finding.verdict == "pass":
+        return
+    result = found.results.get(finding.key)
+    if result is not None and finding.rule.startswith("STACK") and result.combined.shares:
+        yield from wrap("Biggest: " + "; ".join(_share(found, result, 3)) + ".", first="      ", rest="      ")
+    changes = found.remedies.get(finding.key, []) if finding.rule.startswith("STACK") else []
+    remedy = _remedy(changes, inches=found.book.inches) if changes else finding.remedy
+    if remedy and finding.verdict != "waived":
+        yield from wrap(f"Do: {remedy}", first="      ", rest="          ")
+    if finding.verdict == "open" and finding.missing:
+        yield from wrap("Fill: " + ", ".join(finding.missing[:4]) + (" …" if len(finding.missing) > 4 else ""),
+                        first="      ", rest="          ")
+    if finding.rests_on:
+        yield from wrap("Rests on typical values: " + ", ".join(finding.rests_on) + ".", first="      ", rest="      ")
+    if finding.house:
+        yield from wrap(f"House limit: {clean(finding.house)}", first="      ", rest="      ")
+    if finding.waiver:
+        yield from wrap(f"Waived: {clean(finding.waiver)}", first="      ", rest="      ")
+    source = "; ".join(f"{s.ref}, {s.place}" if s.place else s.ref for s in finding.sources[:1])
+    yield from wrap(f"Source: {source} ({finding.evidence})", first="      ", rest="          ")
+
+
+def _margin(finding: Finding) -> str:
+    if finding.margin is None or isinstance(finding.value, str):
+        return ""
+    shown = show(abs(finding.margin), finding.unit or "1", finding.digits)
+    return f" Margin {shown}." if finding.margin >= 0 else f" Over by {shown}."
+
+
+def _remedy(changes: list[Change], *, inches: bool) -> str:
+    """`bring … from 50 to 12 um` for each entry to change."""
+    told = []
+    for change in changes:
+        unit, digits = finer(change.unit, inches=inches)
+        told.append(f"bring the {cause_in_words(change.cause.key)} from {in_unit(change.now, unit, digits)} down to "
+                    f"{show(change.needed, unit, digits)} ({change.path})")
+    text = "; and ".join(told)
+    return text[:1].upper() + text[1:] + ". Or cut both surfaces in one holding, so that it drops out."
+
+
+def _share(found: Review, result: Result, most: int) -> list[str]:
+    unit, digits = finer(result.stack.unit, inches=found.book.inches)
+    return [f"{cause_in_words(s.cause.key)} {show(s.worst, unit, digits)}"
+            + (" measured" if s.cause.mode == "measured" else " typical" if s.cause.mode == "typical" else "")
+            for s in result.combined.shares[:most] if s.worst > 0.0]
+
+
+def _requirements(found: Review, everything: bool) -> Iterator[str]:
+    scopes = found.book.instances("stack")
+    if not scopes:
+        return
+    yield "WHAT WAS ASKED, at its worst"
+    tightest = _tightest(found)
+    for scope in scopes:
+        yield from _requirement(found, scope, everything, scope.key == tightest)
+
+
+def _tightest(found: Review) -> str | None:
+    shares = {k: r.margin_share for k, r in found.results.items() if r.margin_share is not None}
+    return min(shares, key=lambda k: shares[k] or 0.0) if len(shares) > 1 else None
+
+
+def title_of(scope: Scope) -> str:
+    """A requirement in shop words: `run-out at teeth about bearings`."""
+    stack = stack_of(scope)
+    if stack.require.name:
+        return clean(stack.require.name)
+    of, about = stack.of.rpartition(".")[2], stack.about.rpartition(".")[2]
+    silent = stack.require.what in ("allowance", "chord", "pitch-circle", "torque") or not about
+    return f"{stack.require.what} at {of or 'the mesh'}" + ("" if silent else f" about {about}")
+
+
+def limits_in_words(result: Result, unit: str, digits: int) -> str:
+    """The worst value on its own limit's scale: `25.3 of 30.0 um`, `0.274, at least 0.200 mm`, `8.01 .. 8.03 within …`."""
+    worst, stack = result.combined.worst, result.stack
+    if stack.low is not None and stack.high is not None:
+        return (f"{in_unit(worst.low, unit, digits)} to {in_unit(worst.high, unit, digits)} within "
+                f"{in_unit(stack.low, unit, digits)} to {show(stack.high, unit, digits)}")
+    if stack.low is not None:
+        return f"{in_unit(worst.low, unit, digits)}, at least {show(stack.low, unit, digits)} asked"
+    if stack.high is not None:
+        return f"{in_unit(worst.high, unit, digits)} of {show(stack.high, unit, digits)}"
+    return show(worst.high, unit, digits)
+
+
+def _requirement(found: Review, scope: Scope, everything: bool, tightest: bool) -> Iterator[str]:
+    result = found.results.get(scope.key)
+    if result is None:
+        answer = found.book.get("stack.combined", scope)
+        missing = answer.missing if isinstance(answer, Open) else ()
+        because = answer.because if isinstance(answer, Open) else ""
+        why = because or f"fill {', '.join(missing[:3])}{' …' if len(missing) > 3 else ''}"
+        yield from wrap(f"{title_of(scope)}: cannot tell; {why}", first="  ", rest="      ")
+        return
+    unit, digits = unit_of(found.book, scope)
+    line = f"{title_of(scope)} {limits_in_words(result, unit, digits)}"
+    causes = _share(found, result, 1000 if everything else CAUSES_SHOWN)
+    if causes:
+        line += f"; biggest: {causes[0]}"
+    if tightest:
+        line += " (the tightest)"
+    yield from wrap(line, first="  ", rest="      ")
+    if len(causes) > 1:
+        yield from wrap("then " + ", ".join(causes[1:]), first="      ", rest="      ")
+    yield from wrap(_statistics(result, unit, digits, found.loaded.job.confidence), first="      ", rest="      ")
+
+
+def _statistics(result: Result, unit: str, digits: int, confidence: float) -> str:
+    """One sentence on the drawn values, and the rms that is shown and never judged."""
+    c = result.combined
+    share = f"{confidence * 100:g} in 100"
+    if result.figure.signed and (result.stack.low is None) == (result.stack.high is None):
+        likely = f"{share} lie between {in_unit(c.likely.low, unit, digits)} and {show(c.likely.high, unit, digits)}"
+    elif c.end == "low":
+        likely = f"{share} stay above {show(c.likely.low, unit, digits)}"
+    else:
+        likely = f"{share} stay under {show(c.likely.high, unit, digits)}"
+    rss = show(c.rss.low if c.end == "low" else c.rss.high, unit, digits)
+    text = f"Of {TRIALS:,} draws {likely}; rss {rss}"
+    if c.chance is not None and c.chance < 1.0 and c.chance_error is not None:
+        text += f"; chance of meeting it {c.chance * 100:.1f} ± {c.chance_error * 100:.1f} %"
+    return text + "."
+
+
+def _gates(found: Review) -> Iterator[str]:
+    gates = [g for g in found.gates if g.reading is not None]
+    if not gates:
+        return
+    yield "DIAL READING TO ACCEPT, all else as planned"
+    for gate in gates:
+        yield from _gate(gate, inches=found.book.inches)
+
+
+def _gate(gate: Gate, *, inches: bool) -> Iterator[str]:
+    unit, digits = ("thou", 1) if inches else ("um", 0)
+    dial = "face run-out" if gate.step == "square" else "run-out"
+    assert gate.reading is not None
+    planned = show(gate.planned, unit, digits)
+    if gate.reading <= 0.0:
+        text = f"op {gate.op}, {dial} on {gate.on}: no reading will do ({planned} planned); {gate.by} fails even so"
+    else:
+        text = f"op {gate.op}, {dial} on {gate.on}: up to {show(gate.reading, unit, digits)} ({planned} planned), set by {gate.by}"
+    yield from wrap(text, first="  ", rest="      ")
+
+
+def _cautions(found: Review, everything: bool) -> Iterator[str]:
+    rest = [c for c in found.evaluation.cautions if c.severity != "stop-and-check"]
+    if not rest:
+        return
+    yield "CAUTIONS"
+    ops = list(dict.fromkeys(c.op for c in rest))
+    told: set[str] = set()
+    for op in ops:
+        mine = [c for c in rest if c.op == op]
+        fresh = [c for c in mine if everything or c.id not in told][: None if everything else CAUTIONS_SHOWN]
+        for caution in fresh:
+            told.add(caution.id)
+            also = [o for o in ops if o != op and any(c.op == o and c.id == caution.id for c in rest)] if not everything else []
+            where = f"op {op}" + (f" (and {', '.join(str(o) for o in also)})" if also else "")
+            yield from wrap(f"{where}: {caution.text}", first="  ", rest="      ")

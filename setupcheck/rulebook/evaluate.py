@@ -1,0 +1,239 @@
+"""Evaluation: every rule at every instance of its quantity, then house limits, waivers, cautions, order and verdict."""
+
+from __future__ import annotations
+
+from collections.abc import Iterable, Sequence
+from dataclasses import dataclass, replace
+
+from setupcheck.rulebook import cautions as safety
+from setupcheck.rulebook.answers import unanswered_entries
+from setupcheck.rulebook.facts import applies
+from setupcheck.rulebook.house import House, HouseLimit
+from setupcheck.rulebook.judging import judge, judge_word, outside, reaches
+from setupcheck.rulebook.limits import Limits, limit_of, limits_of
+from setupcheck.rulebook.messages import cannot_tell, fill, shown_pair
+from setupcheck.rulebook.needs import NAME_FACT, SURFACE_FACT, Book, Facts, Found, Missing, S, identity, read
+from setupcheck.rulebook.records import (
+    VERDICTS,
+    Answer,
+    CautionLine,
+    Evaluation,
+    Finding,
+    Rule,
+    RuleBook,
+    Verdict,
+    Waiver,
+)
+from setupcheck.rulebook.waivers import waived
+
+
+def evaluate(
+    rulebook: RuleBook,
+    book: Book[S],
+    facts: Facts[S],
+    *,
+    house: House | None = None,
+    waivers: Sequence[Waiver] = (),
+    answers: Sequence[Answer] = (),
+    on: str | None = None,
+) -> Evaluation:
+    """Judge one job.
+
+    book, facts  the numbers and facts of the job (see needs.py)
+    house        a shop's own limits;  waivers, answers  the job's `waive` and `checked` lists
+    on           the day the job is judged (ISO date text); without it no waiver with an end is in force
+    """
+    findings: list[Finding] = []
+    passed_over: dict[str, int] = {}
+    idle: list[str] = []
+    for rule in rulebook.rules:
+        instances = book.instances(book.quantities[rule.quantity].per)
+        if not instances:
+            idle.append(rule.id)
+        own = house.limit_for(rule.id) if house is not None else None
+        for at in instances:
+            finding = _at_instance(rule, book, facts, at, house=own, house_name=house.name if house else "")
+            if finding is None:
+                passed_over[rule.id] = passed_over.get(rule.id, 0) + 1
+            else:
+                findings.append(finding)
+    lines = safety.triggered(rulebook, book, facts, answers=answers)
+    findings = waived(findings, waivers, rulebook=rulebook, on=on)
+    findings += unanswered_entries(answers, lines=lines, rulebook=rulebook)
+    return Evaluation(ordered(findings), passed_over, tuple(idle), lines)
+
+
+def ordered(findings: Iterable[Finding]) -> tuple[Finding, ...]:
+    """Findings by level, then operation (the job as a whole first), then rule, then instance in the order found."""
+    return tuple(sorted(findings, key=lambda f: (VERDICTS.index(f.verdict), -1 if f.op is None else f.op, f.rule)))
+
+
+def verdict(findings: Iterable[Finding], cautions: Iterable[CautionLine] = ()) -> Verdict:
+    """The verdict of the whole job: fail > open > warn > pass.
+
+    A stop-and-check caution that nobody has answered makes it at least open. Waived findings no longer count here
+    (they are counted and listed). A job in which nothing was judged is open: nothing checked is not a pass.
+    """
+    found = [finding.verdict for finding in findings]
+    unanswered = any(line.severity == "stop-and-check" and not line.answered for line in cautions)
+    if "fail" in found:
+        return "fail"
+    if "open" in found or unanswered or not found:
+        return "open"
+    return "warn" if "warn" in found else "pass"
+
+
+def _at_instance(
+    rule: Rule, book: Book[S], facts: Facts[S], at: S, *, house: HouseLimit | None, house_name: str
+) -> Finding | None:
+    """The finding of one rule at one instance; None when it does not apply there."""
+    fits = applies(rule.applies_when, facts, at)
+    if fits.answer == "no":
+        return None
+    value = read(book, rule.quantity, at)
+    if value is None:
+        return None
+    if house is None:
+        limits = limits_of(rule.require, book, at)
+    else:
+        low = house.value if rule.require.shape == "at_least" else None
+        limits = Limits(low, house.value if low is None else None)
+    if limits is None:
+        return None
+
+    blank = _blank(rule, book, at, house=house, house_name=house_name)
+    if fits.answer == "unknown":
+        return _open(blank, Missing(fits.missing))
+    if isinstance(value, Missing):
+        return _open(blank, value)
+    blank = replace(blank, value=value.value, rests_on=value.rests_on)
+    if isinstance(limits, Missing):
+        return _open(blank, limits)
+    return _judged(blank, rule, book, facts, at, value=value, limits=limits)
+
+
+def _judged(
+    blank: Finding, rule: Rule, book: Book[S], facts: Facts[S], at: S, *, value: Found, limits: Limits
+) -> Finding:
+    """The finding where value and limits are there."""
+    names = {
+        "op": "" if at.op is None else str(at.op),
+        "name": _called(facts, at, NAME_FACT),
+        "surface": _called(facts, at, SURFACE_FACT),
+    }
+    if rule.require.shape == "one_of":
+        if not isinstance(value.value, str):
+            raise TypeError(f"{rule.quantity} at {at.key!r} is a number, rule {rule.id} compares words")
+        allowed = rule.require.allowed
+        names |= {"value": value.value, "limit": " or ".join(allowed)}
+        result = judge_word(value.value, allowed, level=rule.level)
+        return _spoken(replace(blank, limit=allowed), rule, result, names, at)
+
+    number = _number(value, rule, rule.quantity, at)
+    beside = _beside(rule, book, at, broken=outside(number, low=limits.low, high=limits.high))
+    if isinstance(beside, Missing):
+        return _open(blank, beside)
+    judgement = judge(
+        number,
+        low=limits.low,
+        high=limits.high,
+        level=rule.level,
+        warn_within=rule.warn_within,
+        softened=beside.softened,
+        standard_uncertainty=beside.uncertainty,
+    )
+    value_text, limit_text = shown_pair(number, judgement.limit, unit=blank.unit, digits=blank.digits)
+    names |= {"value": value_text, "limit": limit_text}
+    rests_on = tuple(sorted({*value.rests_on, *limits.rests_on, *beside.rests_on}))
+    blank = replace(blank, limit=judgement.limit, margin=judgement.margin, rests_on=rests_on)
+    return _spoken(blank, rule, judgement.verdict, names, at)
+
+
+@dataclass(frozen=True, slots=True)
+class _Beside:
+    """What a rule reads beside value and limit: the uncertainty of a measured value, the chance of a planned one."""
+
+    softened: bool = False
+    uncertainty: float | None = None
+    rests_on: tuple[str, ...] = ()
+
+
+def _beside(rule: Rule, book: Book[S], at: S, *, broken: bool) -> _Beside | Missing:
+    """Loading sees to it that a rule has an uncertainty or a softening, never both."""
+    if rule.uncertainty:
+        u = read(book, rule.uncertainty, at)
+        if u is None:
+            return Missing((), f"{rule.uncertainty} is not given")
+        if isinstance(u, Missing):
+            return u
+        return _Beside(uncertainty=_number(u, rule, rule.uncertainty, at), rests_on=u.rests_on)
+    if rule.only_warn_if is None or not broken:
+        return _Beside()
+    chance = read(book, rule.only_warn_if.quantity, at)
+    if isinstance(chance, Missing):
+        return chance
+    wanted = limit_of(rule.only_warn_if.at_least, book, at)
+    if isinstance(wanted, Missing):
+        return wanted
+    if chance is None or wanted is None:
+        return _Beside()
+    softened = reaches(_number(chance, rule, rule.only_warn_if.quantity, at), wanted.value)
+    return _Beside(softened=softened, rests_on=(*chance.rests_on, *wanted.rests_on))
+
+
+def _number(found: Found, rule: Rule, quantity: str, at: S) -> float:
+    if isinstance(found.value, str):
+        raise TypeError(f"{quantity} at {at.key!r} is a word, rule {rule.id} compares numbers")
+    return found.value
+
+
+def _called(facts: Facts[S], at: S, name: str) -> str:
+    """What a message calls the instance or its surface; without an answer its key."""
+    fact = facts(at, name)
+    return fact if isinstance(fact, str) and fact else at.key or at.kind
+
+
+def _spoken(blank: Finding, rule: Rule, result: Verdict, names: dict[str, str], at: S) -> Finding:
+    """Verdict and message put in; a broken rule that asks for an entry of the job names it."""
+    template = rule.message_when_met if result == "pass" and rule.message_when_met else rule.message
+    missing: tuple[str, ...] = ()
+    if result == "open" and rule.asks_for:
+        path = f"{at.path}{rule.asks_for}" if rule.asks_for.startswith(".") else rule.asks_for
+        missing = (path.lstrip("."),)
+    return replace(blank, verdict=result, message=fill(template, names), missing=missing)
+
+
+def _open(blank: Finding, missing: Missing) -> Finding:
+    return replace(
+        blank,
+        verdict="open",
+        missing=missing.missing,
+        message=cannot_tell(missing.missing, missing.because),
+    )
+
+
+def _blank(rule: Rule, book: Book[S], at: S, *, house: HouseLimit | None, house_name: str) -> Finding:
+    """Everything of a finding that is known before judging. Its verdict is open until something is judged."""
+    return Finding(
+        rule=rule.id,
+        title=rule.title,
+        at=identity(at),
+        key=at.key,
+        op=at.op,
+        line=at.line,
+        verdict="open",
+        quantity=rule.quantity,
+        value=None,
+        limit=None,
+        margin=None,
+        unit=book.unit(rule.quantity, at),
+        digits=book.digits(rule.quantity, at),
+        missing=(),
+        message="",
+        remedy=rule.remedy,
+        why=rule.why,
+        sources=rule.sources,
+        evidence=rule.evidence,
+        house=house.said(house_name) if house is not None else "",
+        cautions=rule.cautions,
+    )

@@ -1,0 +1,57 @@
+"""Facts of an instance against the conditions of a rule or caution: yes, no, or unknown."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping, Sequence
+from dataclasses import dataclass
+from typing import Literal
+
+from setupcheck.rulebook.needs import Facts, S, Unknown
+from setupcheck.rulebook.records import Condition
+
+FACTS: Mapping[str, str] = {
+    "job.has_teeth": "true when a part of the job has teeth",
+    "part.material": "material as the job names it",
+    "part.material_family": "copper-alloy, steel, cast-iron, aluminium, other",
+    "surface.kind": "cylinder, bore, taper, thread, face, centre, throat, teeth, holes, slot",
+    "setup.kind": "cut or join",
+    "setup.machine_kind": "lathe, dividing-head, rotary-table, mill, grinder, drill-press, jig-borer, press",
+    "hold.by": "device of a hold entry: three-jaw, spigot, ...",
+    "hold.datum_kind": "kind of surface the entry is set on",
+    "head.tilted": "true when a head is set to an angle for the cut",
+    "divide.by": "hole-circle, direct, vernier, readout, ...",
+    "cut.kind": "kind of surface that is cut",
+    "cut.state": "rough or finish",
+    "cutter.kind": "single-point, hob, form-cutter, drill, reamer, ...",
+    "join.by": "shrink, press, slide, taper, screw, bond",
+    "heat.by": "oven, hot-plate, induction, oil-bath, flame",
+}
+"""The closed list of facts that rules and cautions may ask for, with their values; looked up outward."""
+
+
+@dataclass(frozen=True, slots=True)
+class Applies:
+    """The answer, and for `unknown` the job paths that would settle it."""
+
+    answer: Literal["yes", "no", "unknown"]
+    missing: tuple[str, ...] = ()
+
+
+def applies(conditions: Sequence[Condition], facts: Facts[S], at: S) -> Applies:
+    """AND over the conditions, OR over the values of each. One clear no decides, whatever else is unknown.
+
+    A fact that this kind of thing does not have (None) is a no.
+    """
+    missing: list[str] = []
+    for condition in conditions:
+        fact = facts(at, condition.fact)
+        if isinstance(fact, Unknown):
+            missing.append(fact.path)
+        elif fact is None or not any(_same(fact, value) for value in condition.values):
+            return Applies("no")
+    return Applies("unknown", tuple(dict.fromkeys(missing))) if missing else Applies("yes")
+
+
+def _same(fact: str | float | bool, value: str | float | bool) -> bool:
+    """Equal and of one sort: yes/no is never the number 1 or 0."""
+    return isinstance(fact, bool) == isinstance(value, bool) and fact == value

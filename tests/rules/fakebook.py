@@ -1,0 +1,121 @@
+"""A small book for the rule engine: things, numbers and facts handed in by a test. Base units inside, as in the real one."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping, Sequence
+from dataclasses import dataclass, field
+
+from setupcheck.notation import amount
+from setupcheck.rulebook import Fact
+
+
+@dataclass(frozen=True)
+class FakeScope:
+    kind: str
+    key: str = ""
+    path: str = ""
+    op: int | None = None
+    line: int = 0
+
+
+@dataclass(frozen=True)
+class Has:
+    """A value that is there, and the typical values it rests on."""
+
+    value: object
+    rests_on: frozenset[str] = frozenset()
+
+
+@dataclass(frozen=True)
+class Lacks:
+    """A value that is not there."""
+
+    missing: tuple[str, ...] = ()
+    because: str = ""
+
+
+@dataclass(frozen=True)
+class FakeQuantity:
+    name: str
+    per: str
+    unit: str
+    digits: int
+
+
+@dataclass(frozen=True)
+class FakeBook:
+    """`values`: name -> value for every instance, or (name, key) -> value for one. Absent means the job lacks it."""
+
+    quantities: Mapping[str, FakeQuantity]
+    scopes: Sequence[FakeScope]
+    values: Mapping[str | tuple[str, str], Has | Lacks]
+    units: Mapping[str, tuple[str, int]] = field(default_factory=dict)
+
+    def instances(self, kind: str) -> list[FakeScope]:
+        return [scope for scope in self.scopes if scope.kind == kind]
+
+    def get(self, name: str, at: FakeScope) -> Has | Lacks | None:
+        return self.values.get((name, at.key), self.values.get(name))
+
+    def unit(self, name: str, at: FakeScope) -> str:
+        unit = self.quantities[name].unit
+        return self.units[at.key][0] if unit == "stack" else unit
+
+    def digits(self, name: str, at: FakeScope) -> int:
+        quantity = self.quantities[name]
+        return self.units[at.key][1] if quantity.unit == "stack" else quantity.digits
+
+
+def facts_from(given: Mapping[str, Fact]):  # type: ignore[no-untyped-def]
+    """The same facts for every instance; what is not given, no instance has."""
+
+    def facts(at: FakeScope, name: str) -> Fact:
+        return given.get(name)
+
+    return facts
+
+
+def value_of(text: object, unit: str) -> Has | Lacks:
+    """A value of a case: `28 um`, `measured`, `{fill: path}`, `{because: reason}`."""
+    if isinstance(text, Mapping):
+        if "because" in text:
+            return Lacks((), text["because"])
+        return Lacks(tuple([text["fill"]] if isinstance(text["fill"], str) else text["fill"]))
+    if unit == "":
+        assert isinstance(text, str)
+        return Has(text)
+    return Has(amount(text).value)  # type: ignore[arg-type]
+
+
+QUANTITIES: Mapping[str, FakeQuantity] = {
+    q.name: q
+    for q in (
+        FakeQuantity("job.requirements", "job", "1", 0),
+        FakeQuantity("stack.worst", "stack", "stack", 1),
+        FakeQuantity("stack.limit", "stack", "stack", 1),
+        FakeQuantity("stack.lowest", "stack", "stack", 1),
+        FakeQuantity("stack.floor", "stack", "stack", 1),
+        FakeQuantity("stack.chance", "stack", "%", 1),
+        FakeQuantity("stack.confidence", "stack", "%", 1),
+        FakeQuantity("stack.second_order", "stack", "%", 2),
+        FakeQuantity("datum.state", "hold", "", 0),
+        FakeQuantity("hold.tilt_datums", "setup", "1", 0),
+        FakeQuantity("hold.error_stated", "hold", "", 0),
+        FakeQuantity("hold.direction_known", "hold", "", 0),
+        FakeQuantity("hold.within_plan", "hold", "um", 1),
+        FakeQuantity("hold.planned", "hold", "um", 1),
+        FakeQuantity("hold.measured_u", "hold", "um", 2),
+        FakeQuantity("hold.clearance_share", "hold", "%", 0),
+        FakeQuantity("hold.reach", "cut", "1", 2),
+        FakeQuantity("machine.error_stated", "setup", "", 0),
+        FakeQuantity("allow.least_stock", "cut", "mm", 3),
+        FakeQuantity("allow.finishing_cut", "cut", "mm", 3),
+        FakeQuantity("divide.left_over", "setup", "1", 3),
+        FakeQuantity("divide.folded_harmonic", "setup", "1", 0),
+        FakeQuantity("divide.step_error", "setup", "arcsec", 2),
+        FakeQuantity("divide.setting_error", "setup", "arcsec", 2),
+        FakeQuantity("divide.error_stated", "setup", "", 0),
+        FakeQuantity("place.nominal_gap", "place", "um", 1),
+    )
+}
+"""The quantities that the shipped rules name, written down once more so that a change on one side is noticed."""

@@ -1,0 +1,149 @@
+"""Cautions: when they are printed, that not knowing prints them too, and how they are answered."""
+
+from __future__ import annotations
+
+from pathlib import Path
+from typing import Any
+
+import pytest
+
+from setupcheck.rulebook import FACTS, Answer, Evaluation, RuleBook, Unknown, evaluate, load_rulebook, verdict
+
+from .bookshelf import QUANTITIES, load
+from .fakebook import QUANTITIES as SHIPPED_QUANTITIES
+from .fakebook import FakeBook, FakeScope, Has, Lacks, facts_from
+
+JOIN = FakeScope("join", "50", "setups.50.join", 50, 70)
+HOLDS = [FakeScope("hold", f"10/{step}", f"setups.10.hold.{step}", 10) for step in ("centre", "square")]
+RULES = Path(__file__).parents[2] / "rules"
+
+
+def run(folder: Path, values: dict[Any, Any], facts: dict[str, Any], *answers: Answer) -> Evaluation:
+    fake = FakeBook(QUANTITIES, [*HOLDS, JOIN], values)
+    return evaluate(load(folder), fake, facts_from(facts), answers=answers)
+
+
+def ids(done: Evaluation) -> list[str]:
+    return [line.id for line in done.cautions]
+
+
+def test_a_caution_is_printed_once_an_operation_whatever_the_findings_say(tmp_path: Path) -> None:
+    done = run(tmp_path, {"hold.runout": Has(0.0)}, {"setup.machine_kind": "lathe"})
+    assert [("gloves", 10, "caution", "to mind", "No gloves.", "")] == [
+        (c.id, c.op, c.severity, c.state, c.text, c.because) for c in done.cautions
+    ]
+
+
+def test_the_sources_of_a_caution_are_one_line(tmp_path: Path) -> None:
+    done = run(tmp_path, {}, {"setup.machine_kind": "lathe"})
+    assert "practice of the trade (from memory); our own choice, hands (screening choice)" == done.cautions[0].source
+
+
+def test_a_number_sets_a_caution_off_at_its_limit_and_not_below(tmp_path: Path) -> None:
+    assert ["hot-part"] == ids(run(tmp_path, {"join.heat": Has(60.0)}, {}))
+    assert [] == ids(run(tmp_path, {"join.heat": Has(59.9)}, {}))
+    assert [] == ids(run(tmp_path, {}, {}))
+
+
+def test_a_number_that_is_not_there_is_no_reason_to_keep_quiet(tmp_path: Path) -> None:
+    done = run(tmp_path, {"join.heat": Lacks(("setups.50.join.heat.hub",))}, {})
+    assert [("hot-part", "not stated: setups.50.join.heat.hub")] == [(c.id, c.because) for c in done.cautions]
+
+
+def test_a_fact_that_is_not_stated_is_no_reason_to_keep_quiet(tmp_path: Path) -> None:
+    done = run(tmp_path, {}, {"join.by": Unknown("setups.50.join.by")})
+    assert [("press-force", "to check", "not stated: setups.50.join.by")] == [
+        (c.id, c.state, c.because) for c in done.cautions
+    ]
+
+
+def test_stop_and_check_stands_first(tmp_path: Path) -> None:
+    done = run(tmp_path, {"join.heat": Has(180.0)}, {"join.by": "press", "setup.machine_kind": "lathe"})
+    assert ["press-force", "gloves", "hot-part"] == ids(done)
+
+
+def test_a_stop_and_check_is_open_until_somebody_signs_for_that_operation(tmp_path: Path) -> None:
+    passing: dict[Any, Any] = {"hold.runout": Has(0.0)}
+    press = {"join.by": "press"}
+    done = run(tmp_path, passing, press)
+    assert "open" == verdict(done.findings, done.cautions)
+    done = run(tmp_path, passing, press, Answer("press-force", 50, "KL"))
+    assert ("checked by KL", "pass") == (done.cautions[0].state, verdict(done.findings, done.cautions))
+    done = run(tmp_path, passing, press, Answer("press-force", 50, "  "))
+    assert ("to check", "open") == (done.cautions[0].state, verdict(done.findings, done.cautions))
+
+
+@pytest.mark.parametrize(
+    ("answer", "message", "remedy"),
+    [
+        (Answer("press-forse", 50, "KL"), "there is no caution 'press-forse' to check off", "Did you mean press-force?"),
+        (Answer("press-force", 40, "KL"), "press-force is not asked at op 40", "It is asked at op 50."),
+        (Answer("hot-part", 50, "KL"), "hot-part is not asked at op 50", "Take the entry out."),
+        (Answer("press-force", 50, ""), "press-force at op 50 is checked by nobody", "Write initials under by."),
+    ],
+)
+def test_a_signature_that_answers_nothing_is_told(tmp_path: Path, answer: Answer, message: str, remedy: str) -> None:
+    done = run(tmp_path, {}, {"join.by": "press"}, answer)
+    assert [("CHECK-001", "warn", message, remedy)] == [(f.rule, f.verdict, f.message, f.remedy) for f in done.findings]
+
+
+# -- the shipped cautions
+
+
+def shipped() -> RuleBook:
+    return load_rulebook(RULES, quantities=SHIPPED_QUANTITIES)
+
+
+SCOPES = {
+    "setup": FakeScope("setup", "30", "setups.30", 30),
+    "hold": FakeScope("hold", "30/centre", "setups.30.hold.centre", 30),
+    "cut": FakeScope("cut", "30/teeth", "setups.30.cut.teeth", 30),
+}
+OPERATIONS = {
+    "turning in a four-jaw chuck": (
+        {"setup.kind": "cut", "setup.machine_kind": "lathe", "hold.by": "four-jaw", "part.material_family": "steel"},
+        ["chuck-key-and-jaws", "indicating-out-of-gear", "gloves-near-spindle"]),
+    "turning bronze in soft jaws over shims": (
+        {"setup.kind": "cut", "setup.machine_kind": "lathe", "hold.by": "shimmed-jaws",
+         "part.material_family": "copper-alloy"},
+        ["chuck-key-and-jaws", "indicating-out-of-gear", "shims-held-captive", "gloves-near-spindle", "bronze-chips"]),
+    "flying teeth on a tilted head": (
+        {"setup.kind": "cut", "setup.machine_kind": "dividing-head", "hold.by": "spigot", "head.tilted": True,
+         "cutter.kind": "single-point", "part.material_family": "copper-alloy"},
+        ["fly-cutter-indexing", "fly-cutter-one-screw", "gloves-near-spindle", "bronze-chips", "tilted-head-drops"]),
+    "hobbing": (
+        {"setup.kind": "cut", "setup.machine_kind": "mill", "cutter.kind": "hob", "part.material_family": "steel"},
+        ["gloves-near-spindle"]),
+    "shrinking on": (
+        {"setup.kind": "join", "join.by": "shrink", "heat.by": "oven"},
+        ["glove-heat-rating", "hot-part", "shrink-seized-halfway"]),
+    "pressing on": ({"setup.kind": "join", "join.by": "press"}, ["press-force"]),
+    "sliding on": ({"setup.kind": "join", "join.by": "slide"}, []),
+}  # fmt: skip
+
+
+@pytest.mark.parametrize(("facts", "expected"), OPERATIONS.values(), ids=OPERATIONS.keys())
+def test_an_operation_prints_the_cautions_that_belong_to_it(facts: dict[str, Any], expected: list[str]) -> None:
+    fake = FakeBook(SHIPPED_QUANTITIES, list(SCOPES.values()), {})
+    assert expected == ids(evaluate(shipped(), fake, facts_from(facts)))
+
+
+def test_every_shipped_caution_is_set_off_by_one_of_these_operations() -> None:
+    assert {caution.id for caution in shipped().cautions} == {name for _, names in OPERATIONS.values() for name in names}
+
+
+def test_a_seized_hub_is_never_hammered_or_torched() -> None:
+    text = next(c.text for c in shipped().cautions if c.id == "shrink-seized-halfway")
+    for words in ("let go", "only in the first seconds", "let it cool", "shield", "No hammer, no torch."):
+        assert words in text
+
+
+def test_no_caution_promises_anything() -> None:
+    texts = [shipped().closing_line, *(caution.text for caution in shipped().cautions)]
+    for word in ("safe ", "safely", "approved", "certified", "compliant", "guarantee"):
+        assert not [text for text in texts if word in text.lower()]
+
+
+def test_shipped_conditions_ask_only_for_listed_facts() -> None:
+    asked = {condition.fact for caution in shipped().cautions for condition in caution.trigger.when}
+    assert asked <= set(FACTS)
