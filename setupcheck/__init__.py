@@ -1,8 +1,8 @@
 """setupcheck: does the route, as planned, leave the teeth where the bore needs them?
 
-    from setupcheck import load_job, review
-    result = review(load_job("job.yaml"))
-    result.verdict, result.evaluation.findings
+from setupcheck import load_job, review
+result = review(load_job("job.yaml"))
+result.verdict, result.evaluation.findings
 """
 
 from __future__ import annotations

@@ -84,9 +84,19 @@ def review(job: LoadedJob | str | Path, *, house: str | Path | None = None, on: 
 
     found = evaluate(book_of_rules, book, facts, house=own, waivers=_waivers(loaded), answers=_answers(loaded), on=on)
     results = stack_results(book)
-    return Review(loaded, floor, book, book_of_rules, own, found, verdict(found.findings, found.cautions), results,
-                  tuple(gates(book.scopes, list(results.values()))),
-                  {key: changes for key, r in results.items() if (changes := remedy(loaded, r))}, on)
+    return Review(
+        loaded,
+        floor,
+        book,
+        book_of_rules,
+        own,
+        found,
+        verdict(found.findings, found.cautions),
+        results,
+        tuple(gates(book.scopes, list(results.values()))),
+        {key: changes for key, r in results.items() if (changes := remedy(loaded, r))},
+        on,
+    )
 
 
 def prepare(loaded: LoadedJob) -> tuple[Floor, Book]:
@@ -105,10 +115,14 @@ def stack_results(book: Book) -> dict[str, Result]:
 
 
 def _waivers(loaded: LoadedJob) -> list[Waiver]:
-    return [Waiver(w.rule, w.at, w.reason, w.until or "", f"waive.{i}", loaded.line(f"waive.{i}"))
-            for i, w in enumerate(loaded.job.waive)]
+    return [
+        Waiver(w.rule, w.at, w.reason, w.until or "", f"waive.{i}", loaded.line(f"waive.{i}"))
+        for i, w in enumerate(loaded.job.waive)
+    ]
 
 
 def _answers(loaded: LoadedJob) -> list[Answer]:
-    return [Answer(c.caution, c.op, c.by, c.note or "", f"checked.{i}", loaded.line(f"checked.{i}"))
-            for i, c in enumerate(loaded.job.checked)]
+    return [
+        Answer(c.caution, c.op, c.by, c.note or "", f"checked.{i}", loaded.line(f"checked.{i}"))
+        for i, c in enumerate(loaded.job.checked)
+    ]

@@ -10,7 +10,11 @@ from setupcheck.cli import review, rules, working
 from setupcheck.errors import SetupcheckError
 
 app = typer.Typer(
-    name="setupcheck", rich_markup_mode=None, no_args_is_help=True, add_completion=True, pretty_exceptions_enable=False,
+    name="setupcheck",
+    rich_markup_mode=None,
+    no_args_is_help=True,
+    add_completion=True,
+    pretty_exceptions_enable=False,
     help="Check the setups of one precise part before the first chip: what every holding adds, and whether it is too much.",
     epilog="Exit: 0 pass, 1 warn or open, 2 wrong use or unreadable job, 3 fail.",
 )

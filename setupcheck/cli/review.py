@@ -15,9 +15,13 @@ EXIT = {"pass": 0, "warn": 1, "open": 1, "fail": 3}
 def command(
     jobs: Annotated[list[Path], typer.Argument(metavar="JOB…", help="Job files (YAML).", show_default=False)],
     as_json: Annotated[bool, typer.Option("--json", help="Print JSON instead of text.")] = False,
-    everything: Annotated[bool, typer.Option("--all", help="Passed findings, every cause and every caution as well.")] = False,
+    everything: Annotated[
+        bool, typer.Option("--all", help="Passed findings, every cause and every caution as well.")
+    ] = False,
     house: Annotated[Path | None, typer.Option(help="File of your shop's own limits.", show_default=False)] = None,
-    on: Annotated[str | None, typer.Option(help="Day of the review (2027-03-31), for waivers that end.", show_default=False)] = None,
+    on: Annotated[
+        str | None, typer.Option(help="Day of the review (2027-03-31), for waivers that end.", show_default=False)
+    ] = None,
     color: Annotated[str, typer.Option(help="auto, always or never.")] = "auto",
 ) -> None:
     """Judge every chain of errors of a job. Exit 0 pass, 1 warn or open, 2 unreadable, 3 fail.

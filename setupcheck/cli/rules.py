@@ -8,7 +8,9 @@ from typing import Annotated
 import typer
 
 
-def command(rule: Annotated[str | None, typer.Argument(metavar="[ID]", help="Such as STACK-001.", show_default=False)] = None) -> None:
+def command(
+    rule: Annotated[str | None, typer.Argument(metavar="[ID]", help="Such as STACK-001.", show_default=False)] = None,
+) -> None:
     """List the rules, or show one with its reason and sources.
 
     Example: setupcheck rules DATUM-001

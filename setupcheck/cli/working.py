@@ -11,8 +11,12 @@ import typer
 
 def command(
     job: Annotated[Path, typer.Argument(metavar="JOB", help="Job file (YAML).", show_default=False)],
-    quantity: Annotated[str, typer.Argument(metavar="QUANTITY[@INSTANCE]", help="Such as stack.worst or datum.state@30/centre.",
-                                            show_default=False)],
+    quantity: Annotated[
+        str,
+        typer.Argument(
+            metavar="QUANTITY[@INSTANCE]", help="Such as stack.worst or datum.state@30/centre.", show_default=False
+        ),
+    ],
 ) -> None:
     """Show formula, inputs with their lines, source and evidence of one number.
 

@@ -11,17 +11,15 @@ from pydantic import BaseModel, BeforeValidator, ConfigDict, Field, ValidationIn
 
 from setupcheck import notation
 from setupcheck.jobfile.types import (
-    AngleBound,
     Angle,
+    AngleBound,
     Bound,
-    Fraction,
     Length,
     Limit,
     Limits,
     Reading,
     Size,
     Speed,
-    Temperature,
 )
 
 
@@ -52,13 +50,18 @@ class Dimension(Shop):
             units = (info.context or {}).get("units", "mm")
             read = notation.size(given, units=units)
             shown = {"nominal": read.nominal, "lower": read.lower, "upper": read.upper}
-            return {**{k: f"{v!r} mm" for k, v in shown.items() if v is not None}, **({"fit": read.fit} if read.fit else {})}
+            return {
+                **{k: f"{v!r} mm" for k, v in shown.items() if v is not None},
+                **({"fit": read.fit} if read.fit else {}),
+            }
         return given
 
     @model_validator(mode="after")
     def something_is_stated(self) -> Dimension:
         if self.nominal is None and self.measured is None:
-            raise ValueError("this size has neither a nominal nor a measured value. Write a size, or measured: 32.04 mm")
+            raise ValueError(
+                "this size has neither a nominal nor a measured value. Write a size, or measured: 32.04 mm"
+            )
         return self
 
     @property
@@ -103,11 +106,15 @@ class Deviation(Shop):
     def one_uncertainty(self) -> Deviation:
         if self.uncertainty is not None and self.standard_uncertainty is not None:
             raise ValueError("uncertainty and standard_uncertainty say the same thing twice. Keep one of them")
-        if self.measured is not None and self.measured < 0.0:
-            raise ValueError("a run-out reading is never negative. Write the full indicator movement")
         if self.measured is None and self.at_most is None and self.device is None:
             raise ValueError("this error states nothing. Write at_most: 10 um, or measured: 6 um, or a device")
         return self
+
+    @staticmethod
+    def never_negative(given: Deviation | None) -> None:
+        """A dial reading has no sign; a length error has one."""
+        if given is not None and given.measured is not None and given.measured < 0.0:
+            raise ValueError("a run-out reading is never negative. Write the full indicator movement")
 
     @property
     def u(self) -> float:
@@ -125,8 +132,11 @@ Dim = Annotated[Dimension, WithJsonSchema(_SIZE_SCHEMA)]
 
 # -- surfaces of a part ----------------------------------------------------------------------------------------------
 
-Facing = Annotated[Literal[1, -1], BeforeValidator(lambda g: {"+z": 1, "-z": -1}.get(g, g) if isinstance(g, str) else g),
-                   WithJsonSchema({"enum": ["+z", "-z"]})]
+Facing = Annotated[
+    Literal[1, -1],
+    BeforeValidator(lambda g: {"+z": 1, "-z": -1}.get(g, g) if isinstance(g, str) else g),
+    WithJsonSchema({"enum": ["+z", "-z"]}),
+]
 
 
 class Round(Shop):
@@ -147,7 +157,9 @@ class Round(Shop):
         if self.high <= self.low:
             raise ValueError(f"it runs from {self.low:g} to {self.high:g} mm. Write from: below to:")
         if self.hole is not None and self.hole >= self.diameter.value:
-            raise ValueError(f"a hole of {self.hole:g} mm leaves nothing of {self.diameter.value:g} mm. Write a smaller hole")
+            raise ValueError(
+                f"a hole of {self.hole:g} mm leaves nothing of {self.diameter.value:g} mm. Write a smaller hole"
+            )
         return self
 
 
@@ -223,6 +235,8 @@ class Relation(Shop):
             raise ValueError("a relation `about` an axis needs runout or face_runout. Write runout: 3 um")
         if self.face_runout is not None and self.across is None:
             raise ValueError("face_runout needs the circle it was read on. Write across: 56")
+        Deviation.never_negative(self.runout)
+        Deviation.never_negative(self.face_runout)
         return self
 
 
@@ -297,9 +311,27 @@ class Place(Shop):
 # -- what is asked ---------------------------------------------------------------------------------------------------
 
 What = Literal[
-    "run-out", "face-run-out", "coaxial", "cumulative-pitch", "single-pitch", "gap-centre-pitch", "index-range",
-    "index-within", "on-workpiece", "position", "chord", "pitch-circle", "mid-plane", "backlash", "backlash-swing",
-    "contact-length", "contact-area", "length", "squareness", "torque", "allowance",
+    "run-out",
+    "face-run-out",
+    "coaxial",
+    "cumulative-pitch",
+    "single-pitch",
+    "gap-centre-pitch",
+    "index-range",
+    "index-within",
+    "on-workpiece",
+    "position",
+    "chord",
+    "pitch-circle",
+    "mid-plane",
+    "backlash",
+    "backlash-swing",
+    "contact-length",
+    "contact-area",
+    "length",
+    "squareness",
+    "torque",
+    "allowance",
 ]
 
 
@@ -323,7 +355,7 @@ class Require(Shop):
 
     @model_validator(mode="after")
     def it_has_one_limit(self) -> Require:
-        stated = [x for x in (self.between, self.grade) if x is not None]
+        stated: list[object] = [x for x in (self.between, self.grade) if x is not None]
         stated += [self.at_most] if self.at_most is not None or self.at_least is not None else []
         if len(stated) != 1:
             raise ValueError("a requirement has one limit. Write at_most, at_least, between: [low, high], or grade")
@@ -346,5 +378,3 @@ class Checked(Shop):
     op: int
     by: str = Field(min_length=1)
     note: str | None = None
-
-

@@ -44,7 +44,11 @@ def find_surface(text: str, surfaces: Mapping[str, Sequence[str]], part: str | N
     if len(owners) == 1:
         return Ref(owners[0], name, op)
     if not owners:
-        inside = surfaces.get(part, ()) if part is not None else tuple(dict.fromkeys(s for p in surfaces for s in surfaces[p]))
+        inside = (
+            surfaces.get(part, ())
+            if part is not None
+            else tuple(dict.fromkeys(s for p in surfaces for s in surfaces[p]))
+        )
         return f"no surface is called '{name}'. {_offer(name, inside, '')}"
     both = " or ".join(f"{p}.{name}" for p in owners)
     return f"'{name}' is a surface of {len(owners)} parts. Write {both}"
@@ -82,22 +86,32 @@ def misses(data: Mapping[str, object]) -> Iterator[Miss]:
             if op in seen:
                 yield Miss(("setups", i, "op"), f"operation {op} is there twice. Write the next free number")
             elif seen and op < max(seen):
-                yield Miss(("setups", i, "op"), f"operation {op} stands after {max(seen)}. Write the setups in the order they are done")
+                yield Miss(
+                    ("setups", i, "op"),
+                    f"operation {op} stands after {max(seen)}. Write the setups in the order they are done",
+                )
             seen.append(op)
     for i, wanted in enumerate(_list(data.get("require"))):
         if _map(wanted).get("what") != "torque":
             for key in ("of", "about", "clock"):
                 yield from _surface(_map(wanted).get(key), ("require", i, key), surfaces, None)
         elif _map(wanted).get("of") is not None and not _is_join(data, _map(wanted).get("of")):
-            yield Miss(("require", i, "of"), f"operation {_map(wanted).get('of')} joins nothing. Write the op of the joining")
+            yield Miss(
+                ("require", i, "of"), f"operation {_map(wanted).get('of')} joins nothing. Write the op of the joining"
+            )
     place = _map(data.get("place"))
     yield from _surface(place.get("axis"), ("place", "axis"), surfaces, None)
     yield from _surface(_map(place.get("worm_axis")).get("from"), ("place", "worm_axis", "from"), surfaces, None)
     yield from _surface(_map(data.get("mesh")).get("wheel"), ("mesh", "wheel"), surfaces, None)
 
 
-def _setup_misses(setup: Mapping[str, object], at: tuple[str | int, ...], data: Mapping[str, object],
-                  surfaces: Mapping[str, Sequence[str]], before: Sequence[int]) -> Iterator[Miss]:
+def _setup_misses(
+    setup: Mapping[str, object],
+    at: tuple[str | int, ...],
+    data: Mapping[str, object],
+    surfaces: Mapping[str, Sequence[str]],
+    before: Sequence[int],
+) -> Iterator[Miss]:
     part = setup.get("part")
     own = part if isinstance(part, str) else None
     if own is not None and own not in surfaces:
@@ -105,10 +119,14 @@ def _setup_misses(setup: Mapping[str, object], at: tuple[str | int, ...], data: 
         own = None
     machine, machines = setup.get("machine"), _map(data.get("machines"))
     if isinstance(machine, str) and machine not in machines and machine not in MACHINE_KINDS:
-        yield Miss((*at, "machine"), f"there is no machine '{machine}'. {_offer(machine, (*machines, *MACHINE_KINDS), '')}")
+        yield Miss(
+            (*at, "machine"), f"there is no machine '{machine}'. {_offer(machine, (*machines, *MACHINE_KINDS), '')}"
+        )
     keeps = setup.get("keeps")
     if isinstance(keeps, int) and keeps not in before:
-        yield Miss((*at, "keeps"), f"no operation {keeps} comes before this one. Write the op whose holding was never opened")
+        yield Miss(
+            (*at, "keeps"), f"no operation {keeps} comes before this one. Write the op whose holding was never opened"
+        )
     for hold in ("centre", "and_centre", "square", "stop", "clock"):
         entry = _map(_map(setup.get("hold")).get(hold))
         yield from _surface(entry.get("on"), (*at, "hold", hold, "on"), surfaces, own)
@@ -133,8 +151,9 @@ def _setup_misses(setup: Mapping[str, object], at: tuple[str | int, ...], data: 
         yield from _surface(_map(join.get("stop")).get(key), (*at, "join", "stop", key), surfaces, None)
 
 
-def _surface(text: object, path: tuple[str | int, ...], surfaces: Mapping[str, Sequence[str]], part: str | None
-             ) -> Iterator[Miss]:
+def _surface(
+    text: object, path: tuple[str | int, ...], surfaces: Mapping[str, Sequence[str]], part: str | None
+) -> Iterator[Miss]:
     if isinstance(text, str):
         found = find_surface(text, surfaces, part)
         if isinstance(found, str):

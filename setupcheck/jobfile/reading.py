@@ -40,7 +40,9 @@ class LoadedJob:
         for step in steps:
             if found == ["setups"] and step.isdigit():
                 found.append(next((i for i, s in enumerate(self.job.setups) if s.op == int(step)), 10**9))
-            elif step.isdigit() and found and found[0] in ("require", "waive", "parts") or step.isdigit() and len(found) > 2:
+            elif (step.isdigit() and found and found[0] in ("require", "waive", "parts")) or (
+                step.isdigit() and len(found) > 2
+            ):
                 found.append(int(step))
             else:
                 found.append(step)
@@ -73,7 +75,9 @@ def read_job_text(text: str, file: str) -> LoadedJob:
     """Read and check the text of a job file; `file` is the name shown in messages."""
     tree = parse(text, file, collect=True)
     if not isinstance(tree.data, dict):
-        raise JobError(file, tree.lines, (Problem("", 1, 1, 1, "a job file is a map of keys", "Start with setupcheck: 1"),))
+        raise JobError(
+            file, tree.lines, (Problem("", 1, 1, 1, "a job file is a map of keys", "Start with setupcheck: 1"),)
+        )
     problems: list[Problem] = []
     job: Job | None = None
     try:
@@ -104,16 +108,22 @@ def _problem(error: ErrorDetails, tree: Tree) -> Problem:
         offer = f"Did you mean {near}?" if near else f"Known here: {', '.join(allowed[:14])}"
         return _at(tree.key_place(loc), path, f"'{loc[-1]}' is not a key of this entry. {offer}")
     if kind == "missing":
-        return _at(tree.key_place(loc[:-1]) if len(loc) > 1 else tree.place(()), path,
-                   f"'{loc[-1]}' is missing here. Write {loc[-1]}: …")
+        return _at(
+            tree.key_place(loc[:-1]) if len(loc) > 1 else tree.place(()),
+            path,
+            f"'{loc[-1]}' is missing here. Write {loc[-1]}: …",
+        )
     if kind in ("union_tag_not_found", "union_tag_invalid"):
         tags = [t.strip().strip("'") for t in str(ctx.get("expected_tags", "")).split(",")] or list(_tags_at(loc))
         tags = [t for t in tags if t] or list(_tags_at(loc))
         if kind == "union_tag_not_found":
             return _at(tree.place(loc), f"{path}.kind", f"'kind' is missing here. Write kind: one of {', '.join(tags)}")
         near = nearest(str(ctx.get("tag")), tags)
-        return _at(tree.place((*loc, "kind")), f"{path}.kind",
-                   f"'{ctx.get('tag')}' is not a kind of surface. {f'Did you mean {near}?' if near else 'Write one of: ' + ', '.join(tags)}")
+        return _at(
+            tree.place((*loc, "kind")),
+            f"{path}.kind",
+            f"'{ctx.get('tag')}' is not a kind of surface. {f'Did you mean {near}?' if near else 'Write one of: ' + ', '.join(tags)}",
+        )
     place = tree.place(loc)
     surprise = yaml11_surprise(given) if isinstance(given, str) else None
     if kind == "literal_error":
@@ -129,18 +139,39 @@ def _problem(error: ErrorDetails, tree: Tree) -> Problem:
 
 def _plain_message(kind: str, ctx: dict[str, object], given: object, surprise: str | None) -> str:
     """Messages for plain type and range errors."""
-    shown = "nothing" if given is None else f"'{given}'" if isinstance(given, str | int | float) else {
-        dict: "a map", list: "a list"}.get(type(given), "this")
-    bounds = {"greater_than_equal": ("ge", "at least"), "less_than_equal": ("le", "at most"),
-              "greater_than": ("gt", "more than"), "less_than": ("lt", "less than")}
+    shown = (
+        "nothing"
+        if given is None
+        else f"'{given}'"
+        if isinstance(given, str | int | float)
+        else {dict: "a map", list: "a list"}.get(type(given), "this")
+    )
+    bounds = {
+        "greater_than_equal": ("ge", "at least"),
+        "less_than_equal": ("le", "at most"),
+        "greater_than": ("gt", "more than"),
+        "less_than": ("lt", "less than"),
+    }
     if kind in bounds:
         key, words = bounds[kind]
         return f"{shown} is out of range. Write {words} {ctx.get(key)}"
-    wants = {"int_parsing": "a whole number", "int_type": "a whole number", "int_from_float": "a whole number",
-             "string_type": "a text", "model_type": "a map of keys", "model_attributes_type": "a map of keys",
-             "dict_type": "a map of keys", "tuple_type": "a list", "list_type": "a list", "bool_parsing": "true or false",
-             "bool_type": "true or false", "float_parsing": "a number", "float_type": "a number",
-             "string_too_short": "a longer text", "too_short": "at least one entry"}
+    wants = {
+        "int_parsing": "a whole number",
+        "int_type": "a whole number",
+        "int_from_float": "a whole number",
+        "string_type": "a text",
+        "model_type": "a map of keys",
+        "model_attributes_type": "a map of keys",
+        "dict_type": "a map of keys",
+        "tuple_type": "a list",
+        "list_type": "a list",
+        "bool_parsing": "true or false",
+        "bool_type": "true or false",
+        "float_parsing": "a number",
+        "float_type": "a number",
+        "string_too_short": "a longer text",
+        "too_short": "at least one entry",
+    }
     return f"{shown} does not belong here. {surprise or 'Write ' + wants.get(kind, 'another value')}"
 
 
@@ -156,8 +187,13 @@ def _models(annotation: object) -> Iterator[type[BaseModel]]:
 def _models_at(loc: Loc) -> list[type[BaseModel]]:
     here: list[type[BaseModel]] = [Job]
     for step in loc:
-        below = [m for model in here for name, field in model.model_fields.items()
-                 if step in (field.alias, name) for m in _models(field.annotation)]
+        below = [
+            m
+            for model in here
+            for name, field in model.model_fields.items()
+            if step in (field.alias, name)
+            for m in _models(field.annotation)
+        ]
         tagged = [m for m in here if step in _tags(m)]
         here = below or tagged or here
     return here

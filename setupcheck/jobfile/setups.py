@@ -9,6 +9,7 @@ from pydantic import BeforeValidator, Field, WithJsonSchema, model_validator
 from setupcheck.jobfile.models import (
     Checked,
     Cutter,
+    Deviation,
     Dim,
     Error,
     Facing,
@@ -37,9 +38,24 @@ from setupcheck.jobfile.types import (
 )
 
 Device = Literal[
-    "three-jaw", "four-jaw", "soft-jaws", "shimmed-jaws", "collet", "spigot", "plain-mandrel", "taper-mandrel",
-    "expanding-mandrel", "centres", "faceplate", "edge-finder", "indicator", "fixture", "vee-block", "magnetic-chuck",
-    "pot-chuck", "spindle",
+    "three-jaw",
+    "four-jaw",
+    "soft-jaws",
+    "shimmed-jaws",
+    "collet",
+    "spigot",
+    "plain-mandrel",
+    "taper-mandrel",
+    "expanding-mandrel",
+    "centres",
+    "faceplate",
+    "edge-finder",
+    "indicator",
+    "fixture",
+    "vee-block",
+    "magnetic-chuck",
+    "pot-chuck",
+    "spindle",
 ]
 
 
@@ -84,6 +100,13 @@ class Centre(Shop):
     through: tuple[Through, ...] = ()
     turned: Angle | None = None
 
+    @model_validator(mode="after")
+    def a_dial_reading_has_no_sign(self) -> Centre:
+        Deviation.never_negative(self.runout)
+        for below in self.through:
+            Deviation.never_negative(below.runout)
+        return self
+
 
 class Square(Shop):
     """The face that rules the lean; `across` is the circle the indicator ran on."""
@@ -96,6 +119,7 @@ class Square(Shop):
 
     @model_validator(mode="after")
     def a_reading_has_its_circle(self) -> Square:
+        Deviation.never_negative(self.face_runout)
         if (self.face_runout is not None or self.chip is not None) and self.across is None:
             raise ValueError("face_runout needs the circle it is read on. Write across: 100")
         return self
@@ -170,8 +194,18 @@ class Waves(Shop):
 class Divide(Shop):
     """How the circle is divided, and what each way costs. Amplitudes and bounds are ±."""
 
-    by: Literal["hole-circle", "direct", "vernier", "readout", "theodolite", "polygon", "face-teeth", "sine-bar", "x-y",
-                "rotary-table"]
+    by: Literal[
+        "hole-circle",
+        "direct",
+        "vernier",
+        "readout",
+        "theodolite",
+        "polygon",
+        "face-teeth",
+        "sine-bar",
+        "x-y",
+        "rotary-table",
+    ]
     circle: int | None = Field(default=None, ge=1, le=400)
     wheel: Waves | None = None
     worm: Waves | None = None
@@ -221,8 +255,14 @@ class Cut(Shop):
     form: Bound | None = None
     cutter: str | None = None
     depth: Size | None = None
-    depth_from: Annotated[Touched, BeforeValidator(lambda g: {"surface": g} if isinstance(g, str) else g), WithJsonSchema(
-        {"anyOf": [{"type": "string"}, {"$ref": "#/$defs/Touched"}]})] | None = None
+    depth_from: (
+        Annotated[
+            Touched,
+            BeforeValidator(lambda g: {"surface": g} if isinstance(g, str) else g),
+            WithJsonSchema({"anyOf": [{"type": "string"}, {"$ref": "#/$defs/Touched"}]}),
+        ]
+        | None
+    ) = None
     passes: tuple[Size, ...] = ()
     each: Scatter | None = None
     spindle_to_axis: dict[Literal["x", "y"], Dim] | None = None
@@ -282,13 +322,17 @@ class Setup(Shop):
         if self.join is None and not self.cut:
             raise ValueError("this setup cuts nothing and joins nothing. Write cut: {surface: {}} or join: {…}")
         if self.cut and self.keeps is None and self.hold is None:
-            raise ValueError("this setup does not say how the part is held. Write hold: {…}, or keeps: with the op never opened")
+            raise ValueError(
+                "this setup does not say how the part is held. Write hold: {…}, or keeps: with the op never opened"
+            )
         if self.keeps is not None and self.hold is not None:
             raise ValueError("`keeps` and `hold` say two different things. Keep one of them")
         if self.hold is not None and self.hold.and_centre is not None and self.hold.square is not None:
             raise ValueError("the lean is ruled twice, by square and by and_centre. Keep exactly one tilt datum")
         if self.cut and self.keeps is None and self.looks_at_tool is None:
-            raise ValueError("looks_at_tool is missing. Write looks_at_tool: +z or -z, the end of the part that faces the tool")
+            raise ValueError(
+                "looks_at_tool is missing. Write looks_at_tool: +z or -z, the end of the part that faces the tool"
+            )
         return self
 
 

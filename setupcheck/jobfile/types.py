@@ -51,6 +51,8 @@ def _signed_error(given: object, info: ValidationInfo) -> float:
 
 
 def _range(given: object, info: ValidationInfo) -> tuple[float, float]:
+    if not isinstance(given, list | str):
+        raise ValueError(f"{given!r} is not a range. Write the smallest and the largest: [2 um, 14 um]")
     return notation.length_range(given, units=_units(info), unit_needed=True)
 
 
@@ -84,7 +86,9 @@ Bound = Annotated[float, BeforeValidator(_bound), TEXT]
 """A non-negative error bound [mm]; the unit must be written."""
 Reading = Annotated[float, BeforeValidator(_signed_error), TEXT]
 """A signed measured error [mm]; the unit must be written."""
-Play = Annotated[tuple[float, float], BeforeValidator(_range), WithJsonSchema({"type": "array", "items": {"type": "string"}})]
+Play = Annotated[
+    tuple[float, float], BeforeValidator(_range), WithJsonSchema({"type": "array", "items": {"type": "string"}})
+]
 """Smallest and largest diametral clearance [mm]."""
 Angle = Annotated[float, _plain(notation.angle), TEXT]
 """An angle [rad]; the unit must be written."""
@@ -102,8 +106,14 @@ Speed = Annotated[float, _plain(notation.speed), TEXT]
 """[rev/min]"""
 Fraction = Annotated[float, _plain(notation.fraction), TEXT_OR_NUMBER]
 Limit = Annotated[Amount, BeforeValidator(_amount), TEXT_OR_NUMBER]
-Limits = Annotated[tuple[Amount, Amount], BeforeValidator(_amounts),
-                   WithJsonSchema({"type": "array", "items": {"type": "string"}, "minItems": 2, "maxItems": 2})]
-Service = Annotated[tuple[float, float], BeforeValidator(_service),
-                    WithJsonSchema({"type": "array", "items": {"type": "string"}, "minItems": 2, "maxItems": 2})]
+Limits = Annotated[
+    tuple[Amount, Amount],
+    BeforeValidator(_amounts),
+    WithJsonSchema({"type": "array", "items": {"type": "string"}, "minItems": 2, "maxItems": 2}),
+]
+Service = Annotated[
+    tuple[float, float],
+    BeforeValidator(_service),
+    WithJsonSchema({"type": "array", "items": {"type": "string"}, "minItems": 2, "maxItems": 2}),
+]
 """Coldest and warmest temperature in use [degC]."""

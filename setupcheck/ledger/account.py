@@ -52,7 +52,9 @@ class Account:
     def __mul__(self, factor: complex) -> Account:
         if factor == 0:
             return Account()
-        return Account(self.constant * factor, {cause: (a * factor, b * factor) for cause, (a, b) in self.terms.items()})
+        return Account(
+            self.constant * factor, {cause: (a * factor, b * factor) for cause, (a, b) in self.terms.items()}
+        )
 
     def __neg__(self) -> Account:
         return self * -1.0
@@ -62,8 +64,9 @@ class Account:
 
     def mirrored(self) -> Account:
         """conj(value): the same vector seen from the other end of the part."""
-        return Account(self.constant.conjugate(),
-                       {cause: (b.conjugate(), a.conjugate()) for cause, (a, b) in self.terms.items()})
+        return Account(
+            self.constant.conjugate(), {cause: (b.conjugate(), a.conjugate()) for cause, (a, b) in self.terms.items()}
+        )
 
     def along(self, direction: complex) -> Account:
         """Re(conj(value) direction): the component of a vector along `direction`, times its length. Real."""

@@ -7,14 +7,26 @@ once-per-turn error), a real number for a length or an angle about the axis. Acc
 from __future__ import annotations
 
 import hashlib
+import math
 from dataclasses import dataclass, replace
 from typing import TYPE_CHECKING, Literal
 
 if TYPE_CHECKING:
     from setupcheck.ledger.account import Account
 
-Law = Literal["disc", "ring", "blur", "clearance-disc", "clearance-ring", "rectangle", "length", "gauss", "one-sided",
-              "high-point", "undetermined"]
+Law = Literal[
+    "disc",
+    "ring",
+    "blur",
+    "clearance-disc",
+    "clearance-ring",
+    "rectangle",
+    "length",
+    "gauss",
+    "one-sided",
+    "high-point",
+    "undetermined",
+]
 Mode = Literal["planned", "measured", "typical", "derived"]
 
 TRUNCATION = 3.0
@@ -85,7 +97,7 @@ class Cause:
             case "clearance-disc" | "clearance-ring":
                 return self.high / 2.0
             case "rectangle":
-                return (self.low**2 + self.high**2) ** 0.5
+                return math.hypot(self.low, self.high)
             case "high-point":
                 assert self.of is not None
                 return self.of.largest()

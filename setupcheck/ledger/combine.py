@@ -63,16 +63,17 @@ class Draws:
                 wall = 0.5 * (cause.low + (cause.high - cause.low) * play)
                 return _polar(wall * np.sqrt(rng.random(n)) if cause.law == "clearance-disc" else wall, rng.random(n))
             case "rectangle":
-                return (2.0 * rng.random(n) - 1.0) * cause.low + 1j * (2.0 * rng.random(n) - 1.0) * cause.high
+                along_x = (2.0 * rng.random(n) - 1.0) * cause.low
+                return _complex(along_x, (2.0 * rng.random(n) - 1.0) * cause.high)
             case "length":
-                return (2.0 * rng.random(n) - 1.0) * cause.high + 0j
+                return _complex((2.0 * rng.random(n) - 1.0) * cause.high)
             case "gauss":
-                return cause.spread * _cut_normal(rng, n) + 0j
+                return _complex(cause.spread * _cut_normal(rng, n))
             case "one-sided":
-                return rng.random(n) * cause.high + 0j
+                return _complex(rng.random(n) * cause.high)
             case "high-point":
                 assert cause.of is not None
-                return np.abs(self.account(cause.of)) + 0j
+                return _complex(np.abs(self.account(cause.of)))
             case _:
                 raise ValueError(f"{cause.key} is undetermined and has no value to draw")
 
@@ -101,9 +102,16 @@ class Draws:
         found = self._arcs.get(id(pattern))
         if found is None:
             each = [self.scatter(s, pattern) for s in pattern.scatter if s.along != "radial"]
-            found = self._arcs[id(pattern)] = (pattern, teeth.division_arcs(
-                pattern, [self.cause(p.cause) for p in pattern.periodic],
-                [self.cause(c).real for c in pattern.drift], each, self.trials))
+            found = self._arcs[id(pattern)] = (
+                pattern,
+                teeth.division_arcs(
+                    pattern,
+                    [self.cause(p.cause) for p in pattern.periodic],
+                    [self.cause(c).real for c in pattern.drift],
+                    each,
+                    self.trials,
+                ),
+            )
         return found[1]
 
     def radials(self, pattern: Pattern) -> Reals:
@@ -120,8 +128,12 @@ class Draws:
 
 def _polar(radius: Reals, turns: Reals) -> Complexes:
     angle = turns * (2.0 * np.pi)
-    out = np.empty(len(turns), dtype=complex)
-    out.real, out.imag = radius * np.cos(angle), radius * np.sin(angle)
+    return _complex(radius * np.cos(angle), radius * np.sin(angle))
+
+
+def _complex(real: Reals, imag: Reals | float = 0.0) -> Complexes:
+    out = np.empty(len(real), dtype=np.complex128)
+    out.real, out.imag = real, imag
     return out
 
 
@@ -135,7 +147,7 @@ def _cut_normal(rng: np.random.Generator, n: int) -> Reals:
 
 def _cut_rayleigh(rng: np.random.Generator, n: int) -> Reals:
     """Lengths of two-dimensional standard normal vectors, none longer than 3 (inverse of the cut Rayleigh law)."""
-    share = rng.random(n) * (1.0 - math.exp(-TRUNCATION**2 / 2.0))
+    share = rng.random(n) * (1.0 - math.exp(-(TRUNCATION**2) / 2.0))
     return np.asarray(np.sqrt(-2.0 * np.log1p(-share)))
 
 
@@ -199,8 +211,10 @@ def combine(figure: Figure, draws: Draws, *, low: float | None, high: float | No
     likely = Ends(max(float(ends[0]), worst.low) if figure.signed else 0.0, min(float(ends[1]), worst.high))
     chance, error = _chance(values, worst, low, high)
     total = sum(_towards(p, towards_high) for p in pushes) or 1.0
-    shares = sorted((Share(p.cause, _towards(p, towards_high), _towards(p, towards_high) / total) for p in pushes),
-                    key=lambda s: (-s.worst, s.cause.key))
+    shares = sorted(
+        (Share(p.cause, _towards(p, towards_high), _towards(p, towards_high) / total) for p in pushes),
+        key=lambda s: (-s.worst, s.cause.key),
+    )
     return Combined(worst, rss, likely, chance, error, base, tuple(shares), "high" if towards_high else "low")
 
 

@@ -6,7 +6,6 @@ at its known value (`base`), and its value for a set of draws (`sample`). worst 
 
 from __future__ import annotations
 
-import math
 from dataclasses import dataclass
 from typing import TYPE_CHECKING, Protocol
 
@@ -165,7 +164,7 @@ class Stock:
 
 @dataclass(frozen=True, slots=True, eq=False)
 class MidPlane:
-    """Distance of the tooth mid-plane from where it belongs, worst tooth [mm]: max over j of |a + r Re(t e^(-i theta_j))|.
+    """Distance of the tooth mid-plane from where it belongs, worst tooth [mm]: max over j of |a - Re(conj(t) r e^(i theta_j))|.
 
     Source: geometry, derived here (a leaning ring of teeth).
     """
@@ -183,8 +182,8 @@ class MidPlane:
         low = middle - sum(p.down for p in axial)
         high = middle + sum(p.up for p in axial)
         outward = [Push(p.cause, 0.0, p.up if high >= -low else p.down) for p in axial]
-        if high >= -low > 0.0 and middle < 0.0 or -low > high > 0.0 and middle > 0.0:
-            outward = [Push(p.cause, 0.0, p.size) for p in axial]     # the middle counts outward, so take the larger side
+        if (high >= -low > 0.0 and middle < 0.0) or (-low > high > 0.0 and middle > 0.0):
+            outward = [Push(p.cause, 0.0, p.size) for p in axial]  # the middle counts outward, so take the larger side
         return merged(outward, vector_pushes(self.lean, self.pattern.radius)[1])
 
     def undetermined(self) -> tuple[str, ...]:
@@ -193,7 +192,7 @@ class MidPlane:
     def sample(self, draws: Draws) -> Reals:
         axial, lean = draws.account(self.axial).real, draws.account(self.lean)
         wobble = self.pattern.radius * teeth.waves(lean, teeth.angles(self.pattern))
-        return np.asarray(np.maximum(np.abs(axial + wobble.max(axis=1)), np.abs(axial + wobble.min(axis=1))))
+        return np.asarray(np.maximum(np.abs(axial - wobble.max(axis=1)), np.abs(axial - wobble.min(axis=1))))
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -202,6 +201,7 @@ class Tooth:
 
     flank     True: the worse of both flanks at fixed radius; False: gap centres
     stepwise  True: largest step between neighbours; False: max - min over the turn
+    driven    True: as a worm driving one flank sees it (index figures)
     factor    from arc on the pattern radius to the figure's unit (1, 1/r for an angle, D/(2 r) on a workpiece, …)
     """
 
@@ -210,6 +210,7 @@ class Tooth:
     flank: bool
     stepwise: bool
     factor: float = 1.0
+    driven: bool = False
     signed: bool = False
 
     def base(self) -> float:
@@ -219,10 +220,15 @@ class Tooth:
 
     def pushes(self) -> list[Push]:
         gain = teeth.gains(self.pattern, stepwise=self.stepwise, flank=self.flank)
-        division = [Push(p.cause, 0.0, self.factor * gain.wave[p.harmonic] * (p.cause.bound + abs(p.cause.mean)))
-                    for p in self.pattern.periodic]
-        division += [Push(s.cause, 0.0, self.factor * gain.scatter * self._arc(s.bound, s.along))
-                     for s in self.pattern.scatter if s.along != "radial"]
+        division = [
+            Push(p.cause, 0.0, self.factor * gain.wave[p.harmonic] * (p.cause.bound + abs(p.cause.mean)))
+            for p in self.pattern.periodic
+        ]
+        division += [
+            Push(s.cause, 0.0, self.factor * gain.scatter * self._arc(s.bound, s.along))
+            for s in self.pattern.scatter
+            if s.along != "radial"
+        ]
         division += [Push(c, 0.0, self.factor * gain.drift * c.bound) for c in self.pattern.drift]
         return merged(vector_pushes(self.offset, self.factor * gain.offset)[1], [p for p in division if p.up > 0.0])
 
@@ -230,136 +236,24 @@ class Tooth:
         return bound * self.pattern.radius if along == "angle" else bound
 
     def undetermined(self) -> tuple[str, ...]:
-        mine = [p.cause.missing for p in self.pattern.periodic
-                if p.cause.law == "undetermined" and teeth.folded(p.harmonic, self.pattern.count)]
-        mine += [s.cause.missing for s in self.pattern.scatter
-                 if s.cause.law == "undetermined" and s.along != "radial" and self.pattern.count > 1]
+        mine = [
+            p.cause.missing
+            for p in self.pattern.periodic
+            if p.cause.law == "undetermined" and teeth.folded(p.harmonic, self.pattern.count)
+        ]
+        mine += [
+            s.cause.missing
+            for s in self.pattern.scatter
+            if s.cause.law == "undetermined" and s.along != "radial" and self.pattern.count > 1
+        ]
         return tuple(dict.fromkeys((*self.offset.undetermined(), *mine)))
 
     def sample(self, draws: Draws) -> Reals:
         offset, arcs = draws.account(self.offset), draws.arcs(self.pattern)
         figure = teeth.largest_steps if self.stepwise else teeth.ranges
         sides = (1, -1) if self.flank and self.pattern.pressure_angle else (0,)
-        values = [figure(teeth.flank_arcs(offset, self.pattern, arcs, side=side)) for side in sides]
+        values = [figure(teeth.flank_arcs(offset, self.pattern, arcs, side=side, driven=self.driven)) for side in sides]
         return np.asarray(self.factor * np.maximum.reduce(values))
-
-
-@dataclass(frozen=True, slots=True, eq=False)
-class HolePosition:
-    """Position of holes: twice the largest vector from where a hole belongs [mm].
-
-    turn   account of the pattern's angle about the clocking feature [rad]; None: the pattern may be turned as a whole
-           to its mean angle (no clocking feature is asked for)
-    """
-
-    offset: Account
-    pattern: Pattern
-    turn: Account | None
-    signed: bool = False
-
-    def base(self) -> float:
-        rounding = self.pattern.rounding
-        away = max((abs(r) for r in rounding), default=0.0) * self.pattern.radius
-        return 2.0 * away + vector_pushes(self.offset, 2.0)[0] + 2.0 * abs(self.pattern.radial.known().real)
-
-    def pushes(self) -> list[Push]:
-        r = self.pattern.radius
-        division = [Push(p.cause, 0.0, 2.0 * r * p.cause.bound) for p in self.pattern.periodic]
-        division += [Push(s.cause, 0.0, 2.0 * s.bound * (r if s.along == "angle" else 1.0)) for s in self.pattern.scatter]
-        division += [Push(c, 0.0, 2.0 * r * c.bound) for c in self.pattern.drift]
-        division += [Push(p.cause, 0.0, 2.0 * p.size) for p in real_pushes(self.pattern.radial)[1]]
-        if self.turn is not None:
-            division += [Push(p.cause, 0.0, 2.0 * p.size) for p in real_pushes(self.turn, r)[1]]
-        return merged(vector_pushes(self.offset, 2.0)[1], division)
-
-    def undetermined(self) -> tuple[str, ...]:
-        mine = [p.cause.missing for p in self.pattern.periodic if p.cause.law == "undetermined"]
-        mine += [s.cause.missing for s in self.pattern.scatter if s.cause.law == "undetermined"]
-        turn = self.turn.undetermined() if self.turn is not None else ()
-        return tuple(dict.fromkeys((*self.offset.undetermined(), *self.pattern.radial.undetermined(), *turn, *mine)))
-
-    def vectors(self, draws: Draws) -> NDArray[np.complex128]:
-        """Deviation of every hole in the frame of the pattern, shape (trials, count)."""
-        arcs = draws.arcs(self.pattern)
-        if self.turn is None:
-            arcs = arcs - arcs.mean(axis=1, keepdims=True)
-        else:
-            arcs = arcs + (self.pattern.radius * draws.account(self.turn).real)[:, None]
-        outward = draws.radials(self.pattern) + draws.account(self.pattern.radial).real[:, None]
-        there = np.exp(1j * teeth.angles(self.pattern))[None, :]
-        return np.asarray(draws.account(self.offset)[:, None] + (outward + 1j * arcs) * there)
-
-    def sample(self, draws: Draws) -> Reals:
-        return np.asarray(2.0 * np.abs(self.vectors(draws)).max(axis=1))
-
-
-@dataclass(frozen=True, slots=True, eq=False)
-class HoleChord:
-    """Largest error of the distance between neighbouring holes [mm]; the offset and the turn of the pattern cancel.
-
-    A tangential step d changes the chord by d cos(pi/N); a radial error of both by (r1 + r2) sin(pi/N).
-    Source: geometry, derived here.
-    """
-
-    pattern: Pattern
-    signed: bool = False
-
-    def base(self) -> float:
-        known = 2.0 * math.sin(math.pi / self.pattern.count) * abs(self.pattern.radial.known().real)
-        return known + math.cos(math.pi / self.pattern.count) * teeth.rounding_figure(self.pattern, stepwise=True)
-
-    def pushes(self) -> list[Push]:
-        n, r = self.pattern.count, self.pattern.radius
-        tangential, radial = math.cos(math.pi / n), 2.0 * math.sin(math.pi / n)
-        gain = teeth.gains(self.pattern, stepwise=True, flank=False)
-        found = [Push(p.cause, 0.0, tangential * gain.wave[p.harmonic] * p.cause.bound) for p in self.pattern.periodic]
-        for s in self.pattern.scatter:
-            reach = radial * s.bound if s.along == "radial" else 2.0 * tangential * s.bound * (r if s.along == "angle" else 1.0)
-            found.append(Push(s.cause, 0.0, reach))
-        found += [Push(c, 0.0, tangential * gain.drift * c.bound) for c in self.pattern.drift]
-        found += [Push(p.cause, 0.0, radial * p.size) for p in real_pushes(self.pattern.radial)[1]]
-        return merged([p for p in found if p.up > 0.0])
-
-    def undetermined(self) -> tuple[str, ...]:
-        mine = [s.cause.missing for s in self.pattern.scatter if s.cause.law == "undetermined"]
-        mine += [p.cause.missing for p in self.pattern.periodic
-                 if p.cause.law == "undetermined" and teeth.folded(p.harmonic, self.pattern.count)]
-        return tuple(dict.fromkeys((*self.pattern.radial.undetermined(), *mine)))
-
-    def sample(self, draws: Draws) -> Reals:
-        n = self.pattern.count
-        arcs = draws.arcs(self.pattern) * self.pattern.turn
-        outward = draws.radials(self.pattern) + draws.account(self.pattern.radial).real[:, None]
-        step = np.roll(arcs, -1, axis=1) - arcs
-        both = np.roll(outward, -1, axis=1) + outward
-        return np.asarray(np.abs(step * math.cos(math.pi / n) + both * math.sin(math.pi / n)).max(axis=1))
-
-
-@dataclass(frozen=True, slots=True, eq=False)
-class PitchCircle:
-    """Error of the diameter of the circle through the holes [mm]: twice the mean radial error (least-squares circle).
-
-    Source: least-squares circle, first order, derived here.
-    """
-
-    pattern: Pattern
-    signed: bool = True
-
-    def base(self) -> float:
-        return 2.0 * real_pushes(self.pattern.radial)[0]
-
-    def pushes(self) -> list[Push]:
-        found = real_pushes(self.pattern.radial, 2.0)[1]
-        scatter = [Push(s.cause, 2.0 * s.bound, 2.0 * s.bound) for s in self.pattern.scatter if s.along == "radial"]
-        return merged(found, scatter)
-
-    def undetermined(self) -> tuple[str, ...]:
-        mine = [s.cause.missing for s in self.pattern.scatter if s.cause.law == "undetermined" and s.along == "radial"]
-        return tuple(dict.fromkeys((*self.pattern.radial.undetermined(), *mine)))
-
-    def sample(self, draws: Draws) -> Reals:
-        outward = draws.radials(self.pattern).mean(axis=1) + draws.account(self.pattern.radial).real
-        return np.asarray(2.0 * outward)
 
 
 @dataclass(frozen=True, slots=True, eq=False)

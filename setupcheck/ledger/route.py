@@ -132,8 +132,9 @@ def part_vector(vector: Account, *, sg: int, inserted_at: float) -> Account:
     return vector.mirrored() * cmath.exp(1j * inserted_at)
 
 
-def axis_from_face(datum: Account, *, z_datum: float, centring: Account, face_lean: Account, seating: Account
-                   ) -> tuple[Account, Account]:
+def axis_from_face(
+    datum: Account, *, z_datum: float, centring: Account, face_lean: Account, seating: Account
+) -> tuple[Account, Account]:
     """Machine axis (offset at z = 0, lean) of a part centred in one plane and squared by a face.
 
     t = t_S - eta;  C(z) = axis_D(z_D) - epsilon + t (z - z_D)
@@ -188,8 +189,15 @@ def clocked(face: State, placing_axis: Account, *, at: float, radius: float) -> 
     return face.clock + shift.along(1j * cmath.exp(1j * at)) * (1.0 / radius)
 
 
-def cut(placing: Placing, surface: State, *, machine_offset: Account, machine_lean: Account, dial: Account,
-        index: Account | None = None) -> State:
+def cut(
+    placing: Placing,
+    surface: State,
+    *,
+    machine_offset: Account,
+    machine_lean: Account,
+    dial: Account,
+    index: Account | None = None,
+) -> State:
     """The surface as this holding cuts it: axis = machine axis + machine error, length = stop + sg dial.
 
     machine_lean  zero for everything cut while the work turns or is indexed about the axis
@@ -213,14 +221,16 @@ class Seat:
     turned: float | None
 
 
-def joined(state: State, seat: Seat, *, offset: Account, lean: Account, axial: Account, clock: Account, unknown: Cause
-           ) -> State:
+def joined(
+    state: State, seat: Seat, *, offset: Account, lean: Account, axial: Account, clock: Account, unknown: Cause
+) -> State:
     """A surface of the inner part in the frame of the outer one, after the small displacement (offset, lean, axial).
 
     offset, lean, axial, clock  displacement of the inner frame: axis' = R(axis) + offset + lean z, a' = s a + axial
     unknown                     ring cause of radius 1 for a mounting angle that nobody recorded (seat.turned is None)
     Source: derived here (change of frame; a reversed part mirrors its directions).
     """
+
     def turn(vector: Account) -> Account:
         if seat.turned is None:
             return vector.turned_by_an_unknown_angle(unknown)
@@ -230,9 +240,15 @@ def joined(state: State, seat: Seat, *, offset: Account, lean: Account, axial: A
     z = (ends[0] + ends[1]) / 2.0
     pattern = state.pattern
     if pattern is not None:
-        pattern = replace(pattern, turn=pattern.turn * seat.sense, start=seat.sense * pattern.start + (seat.turned or 0.0))
+        pattern = replace(
+            pattern, turn=pattern.turn * seat.sense, start=seat.sense * pattern.start + (seat.turned or 0.0)
+        )
     return replace(
-        state, low=ends[0], high=ends[1], facing=state.facing * seat.sense, pattern=pattern,
+        state,
+        low=ends[0],
+        high=ends[1],
+        facing=state.facing * seat.sense,
+        pattern=pattern,
         offset=turn(state.offset) + offset + lean * z,
         lean=turn(state.lean) * float(seat.sense) + lean,
         axial=state.axial * float(seat.sense) + axial,
@@ -240,28 +256,74 @@ def joined(state: State, seat: Seat, *, offset: Account, lean: Account, axial: A
     )
 
 
-def bought(root: State, *, name: str, facing: int, low: float, high: float, kind: str, diameter: float | None,
-           near: Account, far: Account, lean: Account | None, axial: Account, clock: Account) -> State:
+def bought(
+    root: State,
+    *,
+    name: str,
+    facing: int,
+    low: float,
+    high: float,
+    kind: str,
+    diameter: float | None,
+    near: Account,
+    far: Account,
+    lean: Account | None,
+    axial: Account,
+    clock: Account,
+) -> State:
     """A surface of a bought part, stated relative to another one (`root`).
 
     near, far  offset from the root's axis at the low and at the high end [mm]
     lean       stated lean relative to the root (faces), None to take it from near and far
     Source: derived here.
     """
-    relative = lean if lean is not None else (
-        (far - near) * (1.0 / (high - low)) if high > low else Account())
+    relative = lean if lean is not None else ((far - near) * (1.0 / (high - low)) if high > low else Account())
     z = (low + high) / 2.0
-    return State(root.part, name, None, kind, low, high, diameter, facing,
-                 offset=root.axis_at(z) + (near + far) * 0.5, lean=root.lean + relative,
-                 axial=root.axial + axial, clock=root.clock + clock)
+    return State(
+        root.part,
+        name,
+        None,
+        kind,
+        low,
+        high,
+        diameter,
+        facing,
+        offset=root.axis_at(z) + (near + far) * 0.5,
+        lean=root.lean + relative,
+        axial=root.axial + axial,
+        clock=root.clock + clock,
+    )
 
 
-def untouched(part: str, name: str, *, kind: str, low: float, high: float, diameter: float | None, facing: int,
-              causes: tuple[Cause, Cause, Cause, Cause], pattern: Pattern | None = None) -> State:
+def untouched(
+    part: str,
+    name: str,
+    *,
+    kind: str,
+    low: float,
+    high: float,
+    diameter: float | None,
+    facing: int,
+    causes: tuple[Cause, Cause, Cause, Cause],
+    pattern: Pattern | None = None,
+) -> State:
     """A surface about which nothing is stated yet: offset, lean, length and angle are undetermined causes of its own."""
     offset, lean, axial, clock = (Account.of(c) for c in causes)
-    return State(part, name, None, kind, low, high, diameter, facing, offset, lean, axial.along(1 + 0j), clock.along(1 + 0j),
-                 pattern=pattern)
+    return State(
+        part,
+        name,
+        None,
+        kind,
+        low,
+        high,
+        diameter,
+        facing,
+        offset,
+        lean,
+        axial.along(1 + 0j),
+        clock.along(1 + 0j),
+        pattern=pattern,
+    )
 
 
 def zero() -> Account:

@@ -2,8 +2,11 @@
 
 Gap j is the j-th cut, at theta_j = start + turn 2 pi (j - 1)/N. With the axis of the ring off by e towards phi:
   gap centre   delta_j = e sin(phi - theta_j) + r Delta_j
-  one flank    delta_j = (e / cos alpha) sin(phi - theta_j -+ alpha) + r Delta_j   (at fixed radius, as pitch is defined)
-  mid-plane    a + r |t| cos(theta_j - psi)
+  one flank    delta_j = (e / cos alpha) sin(phi - theta_j -+ (alpha + pi/2N)) + r Delta_j   (at fixed radius, as pitch is
+               defined; the flank stands half a gap from the middle)
+  wheel angle  the same with alpha alone: a worm touches the flank along its line of action (r Delta_j as an angle)
+  mid-plane    a - Re(conj(t) r exp(i theta_j))
+A gap that runs at the lead angle gamma turns the wobble into pitch: e becomes e + i h tan(gamma) r t, h = +1 right-hand.
 Sources: geometry, derived here; definitions of single and cumulative pitch deviation as in ISO 1328-1:1995; an exact
 involute in the tests agrees within 0.03 um at e = 20 um.
 """
@@ -17,6 +20,7 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
+from setupcheck.ledger.account import Account
 from setupcheck.ledger.route import Pattern
 
 Reals = NDArray[np.float64]
@@ -66,8 +70,9 @@ def backlash_swing(eccentricity: float, pressure_angle: float) -> float:
     return 4.0 * eccentricity * math.tan(pressure_angle)
 
 
-def division_arcs(pattern: Pattern, index_waves: list[NDArray[np.complex128]], drifts: list[Reals], each: list[Reals],
-                  trials: int) -> Reals:
+def division_arcs(
+    pattern: Pattern, index_waves: list[NDArray[np.complex128]], drifts: list[Reals], each: list[Reals], trials: int
+) -> Reals:
     """Arc errors r Delta_j of all places for all trials [mm], shape (trials, count).
 
     index_waves  one array (trials,) per `pattern.periodic`; drifts one array (trials,) per `pattern.drift` [rad]
@@ -83,7 +88,7 @@ def division_arcs(pattern: Pattern, index_waves: list[NDArray[np.complex128]], d
         arcs += pattern.radius * np.asarray(pattern.rounding)[None, :]
     for scatter in each:
         arcs += scatter
-    return arcs * pattern.turn
+    return np.asarray(arcs * pattern.turn)
 
 
 def waves(vectors: NDArray[np.complex128], at: Reals) -> Reals:
@@ -92,14 +97,28 @@ def waves(vectors: NDArray[np.complex128], at: Reals) -> Reals:
     return np.stack([vectors.real, vectors.imag], axis=1) @ basis
 
 
-def flank_arcs(offset: NDArray[np.complex128], pattern: Pattern, arcs: Reals, *, side: int) -> Reals:
-    """Arc deviation of one flank of every gap at fixed radius [mm], shape (trials, count); side +1 or -1.
+def flank_arcs(
+    offset: NDArray[np.complex128], pattern: Pattern, arcs: Reals, *, side: int, driven: bool = False
+) -> Reals:
+    """Arc deviation of one flank of every gap [mm], shape (trials, count); side +1 (counter-clockwise flank) or -1.
 
+    At fixed radius (e / cos alpha) sin(phi - theta - side (alpha + pi/2N)) + r Delta; `driven` by a worm on that flank
     (e / cos alpha) sin(phi - theta - side alpha) + r Delta.  side 0 gives the gap centre: e sin(phi - theta) + r Delta.
     """
     alpha = pattern.pressure_angle or 0.0
-    shifted = offset if side == 0 else offset * (cmath.exp(-1j * side * alpha) / math.cos(alpha))
-    return waves(shifted * -1j, angles(pattern)) + arcs     # Re(-i X e^{-i theta}) = |X| sin(phi - theta)
+    away = alpha if driven else alpha + math.pi / (2.0 * pattern.count)
+    turned = pattern.turn * side * away
+    shifted = offset if side == 0 else offset * (cmath.exp(-1j * turned) / math.cos(alpha))
+    return waves(shifted * -1j, angles(pattern)) + arcs  # Re(-i X e^{-i theta}) = |X| sin(phi - theta)
+
+
+def oblique(offset: Account, lean: Account, *, radius: float, lead_angle: float, right_hand: bool) -> Account:
+    """Eccentricity that a pitch test sees on oblique gaps: e + i h tan(gamma) r t [mm].
+
+    A gap that wobbles along the axis by w and runs at the lead angle gamma shifts by -+ w tan(gamma) in the mid-plane.
+    lead_angle  of the worm at its pitch point [rad], 0 for spur teeth.  Source: geometry, derived here.
+    """
+    return offset + lean * (1j * (1.0 if right_hand else -1.0) * math.tan(lead_angle) * radius)
 
 
 def ranges(arcs: Reals) -> Reals:
@@ -160,5 +179,3 @@ def pitch_from_differences(readings: Reals) -> tuple[Reals, Reals]:
     """
     single = readings - readings.mean()
     return single, np.cumsum(single)
-
-

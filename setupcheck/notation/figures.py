@@ -14,6 +14,7 @@ from setupcheck.notation.wording import Given, NotationError, nearest, plain, qu
 LONGEST_TEXT = 200  # characters of one entry; our screening choice
 MOST_DIGITS = 30  # digits of one number; our screening choice
 LARGEST_EXPONENT = 30  # of ten; our screening choice
+SMALLEST_EXPONENT = -400  # below every float
 
 NUMBER = r"(?:[0-9]+\.?[0-9]*|\.[0-9]+)(?:[eE][+-]?[0-9]+)?"
 _NUMBER = re.compile(rf"([+-]?)\s?({NUMBER})")
@@ -157,9 +158,10 @@ def ratio_of(number: str, given: object, kind: Kind) -> Ratio:
     """
     mantissa, _, exponent = number.lower().partition("e")
     whole, _, part = mantissa.partition(".")
-    if len(whole) + len(part) > MOST_DIGITS or len(exponent) > 4 or abs(int(exponent or 0)) > LARGEST_EXPONENT:
+    power = int(exponent or 0) if len(exponent) <= 4 else LARGEST_EXPONENT + 1
+    if len(whole) + len(part) > MOST_DIGITS or not SMALLEST_EXPONENT <= power <= LARGEST_EXPONENT:
         raise NotationError(f"{quoted(given)} has too many digits", f"Write it as in {kind.example}")
-    power = int(exponent or 0) - len(part)
+    power -= len(part)
     digits = int(whole + part)
     return (digits * 10**power, 1) if power >= 0 else (digits, 10**-power)
 

@@ -8,6 +8,7 @@ from __future__ import annotations
 
 import math
 from collections.abc import Sequence
+from itertools import pairwise
 
 MODULE_RANGES = (0.5, 2.0, 3.5, 6.0, 10.0, 16.0, 25.0, 40.0, 70.0)
 """Ends of the module ranges [mm]. Source: ISO 1328-1:1995 (from memory)."""
@@ -26,7 +27,7 @@ def range_mean(value: float, ends: Sequence[float]) -> float:
     >>> round(range_mean(100.0, DIAMETER_RANGES), 2)
     79.06
     """
-    for low, high in zip(ends, ends[1:], strict=False):
+    for low, high in pairwise(ends):
         if low < value <= high or value == low == ends[0]:
             return math.sqrt(low * high)
     raise ValueError(f"{value:g} mm is outside the table of ISO 1328-1:1995, {ends[0]:g} to {ends[-1]:g} mm")

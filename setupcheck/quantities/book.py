@@ -9,6 +9,7 @@ from __future__ import annotations
 import math
 from collections.abc import Callable, Iterator, Mapping, Sequence
 from dataclasses import dataclass, field
+from typing import Protocol, runtime_checkable
 
 SINGLE = frozenset({"job", "place", "worm", "mesh"})
 """Kinds of thing of which a job has at most one, so they are found from anywhere."""
@@ -18,6 +19,16 @@ BY_INSTANCE = "stack"
 
 INCH = {"um": "thou", "mm": "in"}
 """What an inch file shows instead; one decimal more goes with it."""
+
+
+@runtime_checkable
+class HasUnit(Protocol):
+    """A record that says itself in which unit, and with how many decimals, its numbers are shown."""
+
+    @property
+    def unit(self) -> str: ...
+    @property
+    def digits(self) -> int: ...
 
 
 @dataclass(frozen=True, eq=False)
@@ -136,13 +147,16 @@ class Book:
     def unit(self, name: str, at: Scope) -> str:
         """Display unit of a quantity at an instance."""
         unit = self.quantities[name].unit
-        unit = str(getattr(at.node, "unit")) if unit == BY_INSTANCE else unit
+        if unit == BY_INSTANCE and isinstance(at.node, HasUnit):
+            unit = at.node.unit
         return INCH.get(unit, unit) if self.inches else unit
 
     def digits(self, name: str, at: Scope) -> int:
         """Decimals shown of a quantity at an instance."""
         quantity = self.quantities[name]
-        digits = int(getattr(at.node, "digits")) if quantity.unit == BY_INSTANCE else quantity.digits
+        digits = quantity.digits
+        if quantity.unit == BY_INSTANCE and isinstance(at.node, HasUnit):
+            digits = at.node.digits
         return digits + (self.inches and self.unit(name, at) in INCH.values())
 
     def _make(self, quantity: Quantity, home: Scope) -> Answer:
@@ -165,10 +179,10 @@ class Book:
             return Open(because=str(why))
         if made is None or isinstance(made, Open):
             return made
+        rests_on = whole.rests_on
         if isinstance(made, Known):
-            made, rests_on = made.value, made.rests_on | whole.rests_on
-        else:
-            rests_on = whole.rests_on
+            rests_on = rests_on | made.rests_on
+            made = made.value
         if isinstance(made, float) and not math.isfinite(made):
             return Open(because=f"{quantity.name} has no finite value here")
         return Known(made, rests_on)

@@ -2,14 +2,12 @@
 
 from __future__ import annotations
 
-import math
 from dataclasses import replace
 
 from setupcheck.jobfile.models import Part, Relation
 from setupcheck.ledger.account import Account
 from setupcheck.ledger.route import State, bought
-from setupcheck.notation import NotationError, angle
-from setupcheck.quantities.causes import Entry, Towards, Turned, face_lean, run_out, size_error
+from setupcheck.quantities.causes import Entry, Turned, face_lean, run_out, size_error, stated_direction
 from setupcheck.quantities.shop import Outline, outline, unknown_surface
 
 
@@ -22,14 +20,27 @@ def surfaces_as_bought(name: str, part: Part, made_here: frozenset[str], pressur
     for i, relation in enumerate(part.given):
         about.setdefault(_own(relation.of), []).append((i, relation))
     spoken_of = {*about, *(_own(r.about or r.from_ or "") for r in part.given)}
-    brought = [s for s, node in part.surfaces.items()
-               if node.made == "stock" or s in spoken_of or (s not in made_here and not made_here)]
+    brought = [
+        s
+        for s, node in part.surfaces.items()
+        if node.made == "stock" or s in spoken_of or (s not in made_here and not made_here)
+    ]
     done: dict[str, State] = {}
     while len(done) < len(brought):
-        ready = [s for s in brought if s not in done and all(_own(r.about or r.from_ or "") in done for _, r in about.get(s, []))]
-        for surface in ready or [s for s in brought if s not in done][:1]:     # a ring of relations starts anywhere
-            done[surface] = _placed(name, part, surface, [(i, r) for i, r in about.get(surface, [])
-                                                          if _own(r.about or r.from_ or "") in done], done, pressure_angle)
+        ready = [
+            s
+            for s in brought
+            if s not in done and all(_own(r.about or r.from_ or "") in done for _, r in about.get(s, []))
+        ]
+        for surface in ready or [s for s in brought if s not in done][:1]:  # a ring of relations starts anywhere
+            done[surface] = _placed(
+                name,
+                part,
+                surface,
+                [(i, r) for i, r in about.get(surface, []) if _own(r.about or r.from_ or "") in done],
+                done,
+                pressure_angle,
+            )
     return [done[s] for s in brought]
 
 
@@ -37,8 +48,14 @@ def _own(text: str) -> str:
     return text.rpartition(".")[2].partition("@")[0]
 
 
-def _placed(part_name: str, part: Part, name: str, relations: list[tuple[int, Relation]], done: dict[str, State],
-            pressure_angle: float | None) -> State:
+def _placed(
+    part_name: str,
+    part: Part,
+    name: str,
+    relations: list[tuple[int, Relation]],
+    done: dict[str, State],
+    pressure_angle: float | None,
+) -> State:
     """One surface: what its relations say, undetermined where they say nothing."""
     node = part.surfaces[name]
     unknown = unknown_surface(part_name, name, node, f"parts.{part_name}.given", pressure_angle)
@@ -53,7 +70,9 @@ def _placed(part_name: str, part: Part, name: str, relations: list[tuple[int, Re
     return state
 
 
-def _related(state: State, root: State, relation: Relation, path: str, shape: Outline, part_name: str, name: str) -> State:
+def _related(
+    state: State, root: State, relation: Relation, path: str, shape: Outline, part_name: str, name: str
+) -> State:
     label = f"{part_name}, {name} as bought"
     if relation.from_ is not None and relation.length is not None:
         way = 1.0 if state.z >= root.z else -1.0
@@ -64,38 +83,59 @@ def _related(state: State, root: State, relation: Relation, path: str, shape: Ou
     lean = None
     if relation.face_runout is not None:
         assert relation.across is not None
-        lean = face_lean(relation.face_runout, Entry(f"{label}: face run-out", None, f"{path}.face_runout", "face_runout"),
-                         across=relation.across, facing=shape.facing or 1, towards=_direction(relation.face_runout.high_at),
-                         turned=Turned())
-    placed = bought(root, name=name, facing=shape.facing, low=shape.low, high=shape.high, kind=shape.kind,
-                    diameter=shape.diameter, near=near, far=far, lean=lean, axial=state.axial - root.axial,
-                    clock=state.clock - root.clock)
+        lean = face_lean(
+            relation.face_runout,
+            Entry(f"{label}: face run-out", None, f"{path}.face_runout", "face_runout"),
+            across=relation.across,
+            facing=shape.facing or 1,
+            towards=stated_direction(relation.face_runout.high_at),
+            turned=Turned(),
+        )
+    placed = bought(
+        root,
+        name=name,
+        facing=shape.facing,
+        low=shape.low,
+        high=shape.high,
+        kind=shape.kind,
+        diameter=shape.diameter,
+        near=near,
+        far=far,
+        lean=lean,
+        axial=state.axial - root.axial,
+        clock=state.clock - root.clock,
+    )
     keeps_offset = relation.runout is None
-    return replace(placed, pattern=state.pattern, offset=state.offset if keeps_offset else placed.offset,
-                   lean=placed.lean if lean is not None or shape.high > shape.low else state.lean)
+    return replace(
+        placed,
+        pattern=state.pattern,
+        offset=state.offset if keeps_offset else placed.offset,
+        lean=placed.lean if lean is not None or shape.high > shape.low else state.lean,
+    )
 
 
 def _ends(relation: Relation, path: str, shape: Outline, label: str) -> tuple[Account, Account]:
     """Offsets at both ends. A bound holds at each end by itself; a reading with a direction is the same at both."""
     if relation.runout is None:
         return Account(), Account()
-    towards, inside = _direction(relation.runout.high_at), shape.kind == "bore"
-    if relation.runout.measured is not None and towards.angle is not None or shape.high == shape.low:
-        both = run_out(relation.runout, Entry(f"{label}: run-out", None, f"{path}.runout", ""), inside=inside,
-                       towards=towards, turned=Turned())
+    towards, inside = stated_direction(relation.runout.high_at), shape.kind == "bore"
+    if (relation.runout.measured is not None and towards.angle is not None) or shape.high == shape.low:
+        both = run_out(
+            relation.runout,
+            Entry(f"{label}: run-out", None, f"{path}.runout", ""),
+            inside=inside,
+            towards=towards,
+            turned=Turned(),
+        )
         return both, both
-    ends = [run_out(relation.runout, Entry(f"{label}: run-out at its {end} end", None, f"{path}.runout", ""),
-                    inside=inside, towards=towards, turned=Turned()) for end in ("low", "high")]
+    ends = [
+        run_out(
+            relation.runout,
+            Entry(f"{label}: run-out at its {end} end", None, f"{path}.runout", ""),
+            inside=inside,
+            towards=towards,
+            turned=Turned(),
+        )
+        for end in ("low", "high")
+    ]
     return ends[0], ends[1]
-
-
-def _direction(high_at: str | None) -> Towards:
-    """Direction of a bought part's reading: an angle or its mark; other words need a machine and are not known here."""
-    if high_at is None:
-        return Towards()
-    if high_at == "mark":
-        return Towards(0.0, why="known")
-    try:
-        return Towards(math.remainder(angle(high_at), math.tau), why="known")
-    except NotationError:
-        return Towards()

@@ -8,8 +8,9 @@ from dataclasses import dataclass, replace
 
 from setupcheck.jobfile.models import Deviation, Dimension
 from setupcheck.ledger.account import Account, face_reading_to_lean, fim_to_eccentricity
-from setupcheck.ledger.causes import Cause
+from setupcheck.ledger.causes import Cause, Law
 from setupcheck.ledger.route import part_vector
+from setupcheck.notation import NotationError, angle
 from setupcheck.quantities.typical import typical
 
 
@@ -50,6 +51,18 @@ class Entry:
         return Cause(self.name, "undetermined", self.op, missing=self.path)
 
 
+def stated_direction(high_at: str | None) -> Towards:
+    """Direction of a bought part's reading: an angle or its mark; other words need a machine and are not known here."""
+    if high_at is None:
+        return Towards()
+    if high_at == "mark":
+        return Towards(0.0, why="known")
+    try:
+        return Towards(math.remainder(angle(high_at), math.tau), why="known")
+    except NotationError:
+        return Towards()
+
+
 def vector_error(given: Deviation | None, entry: Entry, *, scale: float, towards: Towards, turned: Turned) -> Account:
     """An eccentricity or lean from an indicator reading.
 
@@ -75,11 +88,14 @@ def vector_error(given: Deviation | None, entry: Entry, *, scale: float, towards
         row = typical(given.device or entry.device, entry.what)
         if row is None:
             return Account.of(replace(entry.missing(), missing=f"{entry.path}.at_most"))
-        cause = Cause(entry.name, "disc", entry.op, high=size * row.value, mode="typical", paths=(entry.path,),
-                      rests_on=row.name)
+        cause = Cause(
+            entry.name, "disc", entry.op, high=size * row.value, mode="typical", paths=(entry.path,), rests_on=row.name
+        )
     if given.device and given.mark == "kept":
         # only equal statements are one cause: a second reading of the same device is another piece of knowledge
-        shared = replace(cause, key=f"{given.device}, mark kept: {entry.what.replace('_', ' ')} {cause.high * 1000:.9g} um")
+        shared = replace(
+            cause, key=f"{given.device}, mark kept: {entry.what.replace('_', ' ')} {cause.high * 1000:.9g} um"
+        )
         return turned.to_part(Account.of(shared))
     return Account.of(cause)
 
@@ -90,7 +106,9 @@ def run_out(given: Deviation | None, entry: Entry, *, inside: bool, towards: Tow
     return vector_error(given, entry, scale=sign * fim_to_eccentricity(1.0), towards=towards, turned=turned)
 
 
-def face_lean(given: Deviation | None, entry: Entry, *, across: float, facing: int, towards: Towards, turned: Turned) -> Account:
+def face_lean(
+    given: Deviation | None, entry: Entry, *, across: float, facing: int, towards: Towards, turned: Turned
+) -> Account:
     """Lean of a face from its run-out read across a circle: -(FIM/across) to the high spot when it looks to +z."""
     return vector_error(given, entry, scale=-facing * face_reading_to_lean(1.0, across), towards=towards, turned=turned)
 
@@ -100,8 +118,15 @@ def length_error(given: Deviation | None, entry: Entry) -> Account:
     if given is None:
         return Account.of(entry.missing())
     if given.measured is not None:
-        cause = Cause(entry.name, "gauss", entry.op, spread=given.u, mean=complex(given.measured), mode="measured",
-                      paths=(entry.path,))
+        cause = Cause(
+            entry.name,
+            "gauss",
+            entry.op,
+            spread=given.u,
+            mean=complex(given.measured),
+            mode="measured",
+            paths=(entry.path,),
+        )
     elif given.at_most is not None:
         cause = Cause(entry.name, "length", entry.op, high=given.at_most, paths=(entry.path,))
     else:
@@ -116,15 +141,21 @@ def size_error(given: Dimension, entry: Entry) -> tuple[float, Account]:
     """
     if given.measured is not None:
         spread = (given.uncertainty or 0.0) / 2.0
-        return given.measured, Account.of(Cause(entry.name, "gauss", entry.op, spread=spread, mode="measured", paths=(entry.path,)))
+        return given.measured, Account.of(
+            Cause(entry.name, "gauss", entry.op, spread=spread, mode="measured", paths=(entry.path,))
+        )
     assert given.nominal is not None
     if given.lower is None and given.upper is None:
         if given.uncertainty is not None:
-            return given.nominal, Account.of(Cause(entry.name, "gauss", entry.op, spread=given.uncertainty / 2.0, paths=(entry.path,)))
+            return given.nominal, Account.of(
+                Cause(entry.name, "gauss", entry.op, spread=given.uncertainty / 2.0, paths=(entry.path,))
+            )
         return given.nominal, Account.of(entry.missing())
     lower, upper = given.lower or 0.0, given.upper or 0.0
     half = (upper - lower) / 2.0
-    return given.nominal + (upper + lower) / 2.0, Account.of(Cause(entry.name, "length", entry.op, high=half, paths=(entry.path,)))
+    return given.nominal + (upper + lower) / 2.0, Account.of(
+        Cause(entry.name, "length", entry.op, high=half, paths=(entry.path,))
+    )
 
 
 def play(given: tuple[float, float] | None, entry: Entry, *, rests: str, pair: str = "") -> Account:
@@ -136,5 +167,5 @@ def play(given: tuple[float, float] | None, entry: Entry, *, rests: str, pair: s
         return Account.of(entry.missing())
     if rests == "centred":
         return Account()
-    law = "clearance-disc" if rests == "free" else "clearance-ring"
+    law: Law = "clearance-disc" if rests == "free" else "clearance-ring"
     return Account.of(Cause(entry.name, law, entry.op, low=given[0], high=given[1], paths=(entry.path,), pair=pair))

@@ -52,8 +52,9 @@ def rounded_settings(count: int, step: float, start: float = 0.0) -> tuple[float
     return tuple(0.0 if abs(e) < 1e-12 else e for e in errors)
 
 
-def divided(pattern: Pattern, divide: Divide | None, cut: Cut, *, op: int, name: str, worm_ratio: int | None, turn: int
-            ) -> Pattern:
+def divided(
+    pattern: Pattern, divide: Divide | None, cut: Cut, *, op: int, name: str, worm_ratio: int | None, turn: int
+) -> Pattern:
     """The pattern with the errors of the dividing method and of the single places.
 
     No `divide` entry: the division is undetermined, unless there is only one place.
@@ -70,10 +71,16 @@ def divided(pattern: Pattern, divide: Divide | None, cut: Cut, *, op: int, name:
 
     if divide is None:
         if pattern.count > 1:
-            scatter.append(Scatter(Cause(f"{head}: how the circle is divided", "undetermined", op, missing=path), "angle", 0.0))
+            scatter.append(
+                Scatter(Cause(f"{head}: how the circle is divided", "undetermined", op, missing=path), "angle", 0.0)
+            )
     else:
         if divide.wheel is None and divide.setting is None and pattern.count > 1:
-            scatter.append(Scatter(Cause(f"{head}: error of the device", "undetermined", op, missing=f"{path}.wheel"), "angle", 0.0))
+            scatter.append(
+                Scatter(
+                    Cause(f"{head}: error of the device", "undetermined", op, missing=f"{path}.wheel"), "angle", 0.0
+                )
+            )
         for owner, key in ((divide.wheel, "wheel"), (divide.worm, "worm")):
             if owner is None:
                 continue
@@ -92,7 +99,9 @@ def divided(pattern: Pattern, divide: Divide | None, cut: Cut, *, op: int, name:
                 cause = Cause(f"{head}: {what}", "length", op, high=bound, paths=(f"{path}.{key}",))
                 scatter.append(Scatter(cause, "angle", bound))
         if divide.drift:
-            drift.append(Cause(f"{head}: drift over the turn", "length", op, high=divide.drift, paths=(f"{path}.drift",)))
+            drift.append(
+                Cause(f"{head}: drift over the turn", "length", op, high=divide.drift, paths=(f"{path}.drift",))
+            )
         if divide.step:
             rounding = rounded_settings(pattern.count, divide.step)
     if cut.each is not None:
@@ -100,10 +109,22 @@ def divided(pattern: Pattern, divide: Divide | None, cut: Cut, *, op: int, name:
         words = f" by {cut.each.by}" if cut.each.by else ""
         for along, limit in (("radial", cut.each.radial), ("tangential", cut.each.tangential)):
             if limit:
-                cause = Cause(f"op {op}, {name}{words}: {along} scatter", "length", op, high=limit, paths=(f"{each}.{along}",))
+                cause = Cause(
+                    f"op {op}, {name}{words}: {along} scatter", "length", op, high=limit, paths=(f"{each}.{along}",)
+                )
                 scatter.append(Scatter(cause, along, limit))
-    return Pattern(pattern.count, pattern.radius, turn, pattern.start, pattern.pressure_angle, tuple(periodic),
-                   tuple(scatter), rounding, tuple(drift), _table_offset(cut, op, name, pattern.radius)[0])
+    return Pattern(
+        pattern.count,
+        pattern.radius,
+        turn,
+        pattern.start,
+        pattern.pressure_angle,
+        tuple(periodic),
+        tuple(scatter),
+        rounding,
+        tuple(drift),
+        _table_offset(cut, op, name, pattern.radius)[0],
+    )
 
 
 def _table_offset(cut: Cut, op: int, name: str, radius: float) -> tuple[Account, Account]:

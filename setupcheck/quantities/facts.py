@@ -7,14 +7,28 @@ from dataclasses import dataclass
 from setupcheck.jobfile.names import Ref
 from setupcheck.jobfile.setups import Setup
 from setupcheck.quantities.book import Scope
+from setupcheck.quantities.requirements import Stack
 from setupcheck.quantities.route import machine_of
 from setupcheck.quantities.scopes import CutEntry, HoldEntry
 from setupcheck.quantities.shop import Floor
-from setupcheck.quantities.stacks import Stack
 
-FAMILIES = {"cu": "copper-alloy", "bronze": "copper-alloy", "brass": "copper-alloy", "gunmetal": "copper-alloy",
-            "gg": "cast-iron", "gjl": "cast-iron", "gjs": "cast-iron", "cast-iron": "cast-iron", "grey-iron": "cast-iron",
-            "al": "aluminium", "en aw": "aluminium", "steel": "steel", "c": "steel", "s": "steel", "x": "steel"}
+FAMILIES = {
+    "cu": "copper-alloy",
+    "bronze": "copper-alloy",
+    "brass": "copper-alloy",
+    "gunmetal": "copper-alloy",
+    "gg": "cast-iron",
+    "gjl": "cast-iron",
+    "gjs": "cast-iron",
+    "cast-iron": "cast-iron",
+    "grey-iron": "cast-iron",
+    "al": "aluminium",
+    "en aw": "aluminium",
+    "steel": "steel",
+    "c": "steel",
+    "s": "steel",
+    "x": "steel",
+}
 """First letters of material names and what they are. Source: common designations (EN), from memory."""
 
 
@@ -90,7 +104,9 @@ def _called(scope: Scope, field: str) -> str | None:
     if isinstance(node, Stack):
         return node.require.name or f"{node.require.what} at {_spoken(node)}" if field == "name" else node.of
     if isinstance(node, HoldEntry):
-        return node.entry.on if field == "surface" else f"op {scope.op}, {node.step.replace('_', ' ')} on {node.entry.on}"
+        return (
+            node.entry.on if field == "surface" else f"op {scope.op}, {node.step.replace('_', ' ')} on {node.entry.on}"
+        )
     if isinstance(node, CutEntry):
         return node.name
     return None
@@ -133,8 +149,11 @@ def _surface_fact(floor: Floor, scope: Scope, setup: Setup | None, name: str) ->
 
 
 def _hold_fact(floor: Floor, scope: Scope, setup: Setup | None, field: str) -> Fact:
-    entry = scope.node.entry if isinstance(scope.node, HoldEntry) else (
-        setup.hold.centre if setup is not None and setup.hold is not None else None)
+    entry = (
+        scope.node.entry
+        if isinstance(scope.node, HoldEntry)
+        else (setup.hold.centre if setup is not None and setup.hold is not None else None)
+    )
     if entry is None:
         return None
     if field == "by":

@@ -136,11 +136,10 @@ def remedy(loaded: LoadedJob, result: Result) -> list[Change]:
             continue
         now, unit = found
         keep = max(0.0, 1.0 - over / share.worst)
-        if keep < 0.2:                        # a fifth of a bound is what care can buy; our screening choice
+        if keep < 0.2:  # a fifth of a bound is what care can buy; our screening choice
             keep = 0.2
         changes.append(Change(share.cause, path, now, now * keep, unit))
         over -= share.worst * (1.0 - keep)
         if over <= 1e-12:
             return changes
     return []
-

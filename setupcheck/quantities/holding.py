@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import cmath
 import math
 import re
 from dataclasses import dataclass
@@ -17,6 +18,7 @@ from setupcheck.notation import NotationError, angle
 from setupcheck.quantities.causes import Entry, Towards, Turned, face_lean, length_error, play, run_out, size_error
 from setupcheck.quantities.devices import DEVICES, Device
 from setupcheck.quantities.shop import Body, Datum, Floor
+
 
 @dataclass(slots=True)
 class Held:
@@ -58,7 +60,9 @@ class Held:
         elif gone := self._gone(state, at):
             found = Datum("cut-away", gone)
         else:
-            found = Datum("stock" if state.op is None and self._is_stock(ref) else "rough" if state.rough else "made", state.op)
+            found = Datum(
+                "stock" if state.op is None and self._is_stock(ref) else "rough" if state.rough else "made", state.op
+            )
         self.floor.datums[f"{self.op}/{step}"] = found
         return state
 
@@ -75,9 +79,16 @@ class Held:
         place = state.z if at is None else self.floor.z(state.part, at)
         for (part, name), states in self.body.states.items():
             for later in states:
-                if (part == state.part and name != state.name and later.op is not None and later.op > (state.op or 0)
-                        and later.kind in ("cylinder", "taper") and later.diameter is not None
-                        and later.low <= place <= later.high and later.diameter < state.diameter):
+                if (
+                    part == state.part
+                    and name != state.name
+                    and later.op is not None
+                    and later.op > (state.op or 0)
+                    and later.kind in ("cylinder", "taper")
+                    and later.diameter is not None
+                    and later.low <= place <= later.high
+                    and later.diameter < state.diameter
+                ):
                     return later.op
         return None
 
@@ -103,8 +114,11 @@ def direction(held: Held, given: Deviation | None, path: str, device: Device) ->
     state = held.body.now(Ref(held.part, text)) if text in held.floor.loaded.surfaces()[held.part] else None
     if state is not None and state.pattern is not None:
         return Towards(state.pattern.angle(1), why="known")
-    raise held.floor.problem(f"{path}.high_at", f"'{text}' names no direction",
-                             "Write a tooth or hole already cut (tooth 14), an angle from the mark (90 deg), mark, or jaw 2")
+    raise held.floor.problem(
+        f"{path}.high_at",
+        f"'{text}' names no direction",
+        "Write a tooth or hole already cut (tooth 14), an angle from the mark (90 deg), mark, or jaw 2",
+    )
 
 
 def _place_angle(held: Held, kind: str, number: int, path: str) -> float:
@@ -113,12 +127,18 @@ def _place_angle(held: Held, kind: str, number: int, path: str) -> float:
         state = states[-1]
         if state.kind == kind and state.pattern is not None and (state.op is not None or state.part != held.part):
             if not 1 <= number <= state.pattern.count:
-                raise held.floor.problem(f"{path}.high_at", f"{state.name} has {state.pattern.count} places, not {number}",
-                                         f"Write a number from 1 to {state.pattern.count}")
+                raise held.floor.problem(
+                    f"{path}.high_at",
+                    f"{state.name} has {state.pattern.count} places, not {number}",
+                    f"Write a number from 1 to {state.pattern.count}",
+                )
             return state.pattern.angle(number)
     thing = "hole" if kind == "holes" else "tooth"
-    raise held.floor.problem(f"{path}.high_at", f"{thing} {number} is not cut yet when operation {held.op} is set up",
-                             "Write an angle from the part's mark, as in high_at: 90 deg")
+    raise held.floor.problem(
+        f"{path}.high_at",
+        f"{thing} {number} is not cut yet when operation {held.op} is set up",
+        "Write an angle from the part's mark, as in high_at: 90 deg",
+    )
 
 
 def _entry(held: Held, centre: Centre, step: str, what: str, key: str) -> Entry:
@@ -136,19 +156,33 @@ def centring(held: Held, centre: Centre, step: str, state: State, *, pair: str) 
             missing = f"{path}.{'x' if centre.x is None else 'y'}"
             total += Account.of(Cause(entry.name, "undetermined", held.op, missing=missing))
         else:
-            total += Account.of(Cause(entry.name, "rectangle", held.op, low=centre.x, high=centre.y,
-                                      paths=(f"{path}.x", f"{path}.y")))
-    if centre.runout is not None or not device.xy and centre.x is None:
+            total += Account.of(
+                Cause(entry.name, "rectangle", held.op, low=centre.x, high=centre.y, paths=(f"{path}.x", f"{path}.y"))
+            )
+    if centre.runout is not None or (not device.xy and centre.x is None):
         towards = direction(held, centre.runout, f"{path}.runout", device)
         held.floor.directions[f"{held.op}/{step}"] = towards.why
-        total += run_out(centre.runout, _entry(held, centre, step, f"run-out{plane}", "runout"),
-                         inside=state.kind == "bore", towards=towards, turned=held.turned(centre))
+        total += run_out(
+            centre.runout,
+            _entry(held, centre, step, f"run-out{plane}", "runout"),
+            inside=state.kind == "bore",
+            towards=towards,
+            turned=held.turned(centre),
+        )
     if device.clearance or centre.clearance is not None:
-        total += play(centre.clearance, _entry(held, centre, step, f"clearance{plane}", "clearance"),
-                      rests=centre.rests or device.rests, pair=pair)
+        total += play(
+            centre.clearance,
+            _entry(held, centre, step, f"clearance{plane}", "clearance"),
+            rests=centre.rests or device.rests,
+            pair=pair,
+        )
     for i, below in enumerate(centre.through):
-        entry = Entry(f"op {held.op}, {centre.on} through {below.by}: run-out{plane}", held.op,
-                      f"{path}.through.{i}.runout", below.by)
+        entry = Entry(
+            f"op {held.op}, {centre.on} through {below.by}: run-out{plane}",
+            held.op,
+            f"{path}.through.{i}.runout",
+            below.by,
+        )
         total += run_out(below.runout, entry, inside=False, towards=Towards(), turned=held.turned(centre))
     return total
 
@@ -158,7 +192,7 @@ def _plane_height(held: Held, centre: Centre, state: State, other: float | None)
         return held.floor.z(state.part, centre.at)
     if centre.grip is not None:
         return held.floor.z(state.part, (centre.grip.low + centre.grip.high) / 2.0)
-    if other is not None:                       # a second plane on the same surface: its far end
+    if other is not None:  # a second plane on the same surface: its far end
         return state.low if abs(state.low - other) > abs(state.high - other) else state.high
     return state.z
 
@@ -173,36 +207,52 @@ def held_placing(held: Held, hold: Hold) -> Placing:
 
 def _axis(held: Held, hold: Hold) -> tuple[Account, Account]:
     op = held.op
-    nothing = (Account.of(Cause(f"op {op}: where the part is centred", "undetermined", op, missing=held.path("centre"))),
-               Account.of(Cause(f"op {op}: how the part leans", "undetermined", op, missing=held.path("square"))))
+    nothing = (
+        Account.of(Cause(f"op {op}: where the part is centred", "undetermined", op, missing=held.path("centre"))),
+        Account.of(Cause(f"op {op}: how the part leans", "undetermined", op, missing=held.path("square"))),
+    )
     if hold.centre is None:
         held.floor.tilt_datums[op] = int(hold.square is not None)
         return nothing
     state = held.datum(hold.centre.on, "centre", hold.centre.at)
     second = held.datum(hold.and_centre.on, "and_centre", hold.and_centre.at) if hold.and_centre is not None else None
     face = held.datum(hold.square.on, "square", None) if hold.square is not None else None
-    grip = hold.centre.grip if hold.square is None and hold.and_centre is None and DEVICES[hold.centre.by].grips else None
+    grip = (
+        hold.centre.grip if hold.square is None and hold.and_centre is None and DEVICES[hold.centre.by].grips else None
+    )
     held.floor.tilt_datums[op] = sum(x is not None for x in (hold.and_centre, hold.square, grip))
     if state is None:
-        lost = Account.of(Cause(f"op {op}: where the part is centred", "undetermined", op, missing=held.path("centre.on")))
+        lost = Account.of(
+            Cause(f"op {op}: where the part is centred", "undetermined", op, missing=held.path("centre.on"))
+        )
         return lost, nothing[1]
     z1 = _plane_height(held, hold.centre, state, None)
-    pair = f"op {op}, {hold.centre.on}: play" if hold.and_centre is not None and hold.and_centre.on == hold.centre.on else ""
+    pair = (
+        f"op {op}, {hold.centre.on}: play"
+        if hold.and_centre is not None and hold.and_centre.on == hold.centre.on
+        else ""
+    )
     first = state.axis_at(z1) - centring(held, hold.centre, "centre", state, pair=pair)
     if hold.square is not None:
         if face is None:
             lean = Account.of(Cause(f"op {op}: how the part leans", "undetermined", op, missing=held.path("square.on")))
             return first - lean * z1, lean
-        return route.axis_from_face(first, z_datum=z1, centring=Account(), face_lean=face.lean,
-                                    seating=seating(held, hold.square, face))
+        return route.axis_from_face(
+            first, z_datum=z1, centring=Account(), face_lean=face.lean, seating=seating(held, hold.square, face)
+        )
     if hold.and_centre is not None:
         if second is None:
-            lean = Account.of(Cause(f"op {op}: how the part leans", "undetermined", op, missing=held.path("and_centre.on")))
+            lean = Account.of(
+                Cause(f"op {op}: how the part leans", "undetermined", op, missing=held.path("and_centre.on"))
+            )
             return first - lean * z1, lean
         z2 = _plane_height(held, hold.and_centre, second, z1 if second is state else None)
         if z1 == z2:
-            raise held.floor.problem(held.path("and_centre"), f"both centring planes stand at {z1:g} mm",
-                                     "Write at: for each of them, as far apart as the part allows")
+            raise held.floor.problem(
+                held.path("and_centre"),
+                f"both centring planes stand at {z1:g} mm",
+                "Write at: for each of them, as far apart as the part allows",
+            )
         held.floor.planes[op] = (z1, z2)
         far = second.axis_at(z2) - centring(held, hold.and_centre, "and_centre", second, pair=pair)
         return route.axis_from_planes(first, far, z_first=z1, z_second=z2)
@@ -216,14 +266,31 @@ def seating(held: Held, square: Square, face: State) -> Account:
     path = held.path("square")
     across = square.across if square.across is not None else face.diameter
     if across is None:
-        return Account.of(Cause(f"op {held.op}, {square.on}{words}: face run-out", "undetermined", held.op, missing=f"{path}.across"))
-    entry = Entry(f"op {held.op}, {square.on}{words}: face run-out", held.op, f"{path}.face_runout", square.by or "", "face_runout")
+        return Account.of(
+            Cause(f"op {held.op}, {square.on}{words}: face run-out", "undetermined", held.op, missing=f"{path}.across")
+        )
+    entry = Entry(
+        f"op {held.op}, {square.on}{words}: face run-out",
+        held.op,
+        f"{path}.face_runout",
+        square.by or "",
+        "face_runout",
+    )
     towards = direction(held, square.face_runout, f"{path}.face_runout", DEVICES["faceplate"])
     held.floor.directions[f"{held.op}/square"] = towards.why
-    total = face_lean(square.face_runout, entry, across=across, facing=face.facing or 1, towards=towards, turned=held.turned(None))
+    total = face_lean(
+        square.face_runout, entry, across=across, facing=face.facing or 1, towards=towards, turned=held.turned(None)
+    )
     if square.chip is not None:
-        total += Account.of(Cause(f"op {held.op}, {square.on}{words}: chip under one side", "disc", held.op,
-                                  high=square.chip / across, paths=(f"{path}.chip",)))
+        total += Account.of(
+            Cause(
+                f"op {held.op}, {square.on}{words}: chip under one side",
+                "disc",
+                held.op,
+                high=square.chip / across,
+                paths=(f"{path}.chip",),
+            )
+        )
     return total
 
 
@@ -231,14 +298,20 @@ def _stop(held: Held, stop: Stop | None, lean: Account) -> Account:
     """a_s: the machine's zero of length, seen from the part."""
     op = held.op
     if stop is None:
-        return Account.of(Cause(f"op {op}: where the part is stopped", "undetermined", op, missing=held.path("stop"))).along(1)
+        return Account.of(
+            Cause(f"op {op}: where the part is stopped", "undetermined", op, missing=held.path("stop"))
+        ).along(1)
     face = held.datum(stop.on, "stop", None)
     if face is None:
-        return Account.of(Cause(f"op {op}: where the part is stopped", "undetermined", op, missing=held.path("stop.on"))).along(1)
+        return Account.of(
+            Cause(f"op {op}: where the part is stopped", "undetermined", op, missing=held.path("stop.on"))
+        ).along(1)
     error = length_error(stop.error, Entry(f"op {op}, stop on {stop.on}", op, f"{held.path('stop')}.error", "stop"))
     for i, spacer in enumerate(stop.spacers):
-        error += size_error(spacer.length, Entry(f"op {op}, {spacer.name} at the stop", op,
-                                                 f"{held.path('stop')}.spacers.{i}.length", ""))[1]
+        error += size_error(
+            spacer.length,
+            Entry(f"op {op}, {spacer.name} at the stop", op, f"{held.path('stop')}.spacers.{i}.length", ""),
+        )[1]
     return contact(held, stop, face, lean, held.path("stop")) - error * float(held.sg)
 
 
@@ -248,18 +321,29 @@ def contact(held: Held, stop: Stop, face: State, lean: Account, path: str) -> Ac
     if stop.touches == "point":
         if stop.radius is None or stop.direction is None:
             what = "radius" if stop.radius is None else "direction"
-            return Account.of(Cause(f"op {held.op}, stop on {stop.on}: where it touches", "undetermined", held.op,
-                                    missing=f"{path}.{what}")).along(1)
-        there = stop.direction if held.sg > 0 else -stop.direction
-        return route.touched_height(face, lean, point=stop.radius * complex(math.cos(there), math.sin(there)), ring=None)
+            return Account.of(
+                Cause(
+                    f"op {held.op}, stop on {stop.on}: where it touches",
+                    "undetermined",
+                    held.op,
+                    missing=f"{path}.{what}",
+                )
+            ).along(1)
+        where = Account(stop.radius * cmath.exp(1j * stop.direction))
+        centre = held.setup.hold.centre if held.setup.hold is not None else None
+        return route.touched_height(face, lean, point=held.turned(centre).to_part(where).constant, ring=None)
     if square is not None and held.ref(square.on) == held.ref(stop.on):
         return face.axial
     radius = stop.radius if stop.radius is not None else (face.diameter or 0.0) / 2.0
     if radius == 0.0:
-        return Account.of(Cause(f"op {held.op}, stop on {stop.on}: where it touches", "undetermined", held.op,
-                                missing=f"{path}.radius")).along(1)
-    ring = route.high_point(f"op {held.op}, stop on {stop.on}: touches at the high point", face=face, lean=lean,
-                            radius=radius, op=held.op)
+        return Account.of(
+            Cause(
+                f"op {held.op}, stop on {stop.on}: where it touches", "undetermined", held.op, missing=f"{path}.radius"
+            )
+        ).along(1)
+    ring = route.high_point(
+        f"op {held.op}, stop on {stop.on}: touches at the high point", face=face, lean=lean, radius=radius, op=held.op
+    )
     return route.touched_height(face, lean, point=None, ring=ring)
 
 
@@ -267,11 +351,17 @@ def _clock(held: Held, clock: Clock | None, offset: Account, lean: Account) -> A
     """k_s: the machine's zero of angle, seen from the part [rad]."""
     op = held.op
     if clock is None:
-        return Account.of(Cause(f"op {op}: where the part is clocked", "undetermined", op, missing=held.path("clock"))).along(1)
+        return Account.of(
+            Cause(f"op {op}: where the part is clocked", "undetermined", op, missing=held.path("clock"))
+        ).along(1)
     state = held.datum(clock.on, "clock", None)
     if state is None or state.pattern is None:
-        return Account.of(Cause(f"op {op}: where the part is clocked", "undetermined", op, missing=held.path("clock.on"))).along(1)
+        return Account.of(
+            Cause(f"op {op}: where the part is clocked", "undetermined", op, missing=held.path("clock.on"))
+        ).along(1)
     at = state.pattern.angle(min(clock.number, state.pattern.count))
-    error = length_error(clock.error, Entry(f"op {op}, clocked on {clock.on}", op, f"{held.path('clock')}.error", "clock"))
+    error = length_error(
+        clock.error, Entry(f"op {op}, clocked on {clock.on}", op, f"{held.path('clock')}.error", "clock")
+    )
     found = route.clocked(state, offset + lean * state.z, at=at, radius=state.pattern.radius)
     return found - error * (held.sg / state.pattern.radius)

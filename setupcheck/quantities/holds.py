@@ -46,7 +46,9 @@ def direction_known(floor: Floor, key: str, entry: HoldEntry) -> str | None:
 def measured(entry: HoldEntry) -> float | None:
     """Measured error, where a plan stands beside it. Source: the job file."""
     given = entry.error
-    return abs(given.measured) if given is not None and given.measured is not None and given.at_most is not None else None
+    return (
+        abs(given.measured) if given is not None and given.measured is not None and given.at_most is not None else None
+    )
 
 
 def planned(entry: HoldEntry) -> float | None:
@@ -129,8 +131,14 @@ def left_over(floor: Floor, setup: Setup) -> float | Open | None:
     if found is None or setup.divide is None or setup.divide.by != "hole-circle":
         return None
     _, count, ratio = found
-    missing = tuple(path for value, path in ((setup.divide.circle, f"setups.{setup.op}.divide.circle"),
-                                             (ratio, f"machines.{setup.machine}.worm_ratio")) if value is None)
+    missing = tuple(
+        path
+        for value, path in (
+            (setup.divide.circle, f"setups.{setup.op}.divide.circle"),
+            (ratio, f"machines.{setup.machine}.worm_ratio"),
+        )
+        if value is None
+    )
     if missing:
         return Open(missing)
     assert ratio is not None and setup.divide.circle is not None

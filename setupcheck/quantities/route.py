@@ -13,7 +13,16 @@ from setupcheck.ledger.account import Account
 from setupcheck.ledger.causes import Cause
 from setupcheck.ledger.route import Placing, Seat, State
 from setupcheck.quantities.bought import surfaces_as_bought
-from setupcheck.quantities.causes import Entry, Towards, Turned, length_error, play, run_out, size_error
+from setupcheck.quantities.causes import (
+    Entry,
+    Towards,
+    Turned,
+    length_error,
+    play,
+    run_out,
+    size_error,
+    stated_direction,
+)
 from setupcheck.quantities.dividing import divided, table_turn
 from setupcheck.quantities.holding import Held, held_placing
 from setupcheck.quantities.shop import Body, Floor, outline, tooth_pattern, unknown_surface
@@ -67,8 +76,11 @@ def _hold_and_cut(floor: Floor, setup: Setup) -> None:
     if setup.keeps is not None:
         placing = floor.placings.get(setup.keeps)
         if placing is None:
-            raise floor.problem(f"setups.{setup.op}.keeps", f"operation {setup.keeps} holds nothing",
-                                "Write the op whose holding was never opened")
+            raise floor.problem(
+                f"setups.{setup.op}.keeps",
+                f"operation {setup.keeps} holds nothing",
+                "Write the op whose holding was never opened",
+            )
     else:
         assert setup.hold is not None
         placing = held_placing(held, setup.hold)
@@ -86,28 +98,52 @@ def _cut(floor: Floor, held: Held, placing: Placing, name: str, cut: Cut) -> Non
     loaded, setup, op = floor.loaded, held.setup, held.setup.op
     ref = held.ref(name)
     if floor.body(ref.part) is not held.body:
-        raise floor.problem(f"setups.{op}.cut.{name}", f"{ref} is not on the part held here",
-                            "Write a setup of its own for it, or join the parts first")
+        raise floor.problem(
+            f"setups.{op}.cut.{name}",
+            f"{ref} is not on the part held here",
+            "Write a setup of its own for it, or join the parts first",
+        )
     node = loaded.job.parts[ref.part].surfaces[ref.surface]
     before = held.body.now(ref)
-    drawn = before if before is not None else unknown_surface(
-        ref.part, ref.surface, node, f"setups.{op}", _worm_angle(loaded, ref.part))
+    drawn = (
+        before
+        if before is not None
+        else unknown_surface(ref.part, ref.surface, node, f"setups.{op}", _worm_angle(loaded, ref.part))
+    )
     if before is None:
         ends = sorted((floor.z(ref.part, drawn.low), floor.z(ref.part, drawn.high)))
         drawn = replace(drawn, low=ends[0], high=ends[1], facing=drawn.facing * floor.sense(ref.part))
-    target = _as_cut(drawn, cut, outline(node).diameter, floor.z(ref.part, outline(node).low),
-                     floor.z(ref.part, cut.to) if cut.to is not None else None)
+    target = _as_cut(
+        drawn,
+        cut,
+        outline(node).diameter,
+        floor.z(ref.part, outline(node).low),
+        floor.z(ref.part, cut.to) if cut.to is not None else None,
+    )
     error, turn = _machine_error(floor, setup, ref.surface), Account()
     if target.pattern is not None:
         fresh = tooth_pattern(node, _worm_angle(loaded, ref.part))
         assert fresh is not None
         _, machine = machine_of(loaded, setup)
-        pattern = divided(fresh, setup.divide, cut, op=op, name=name, turn=placing.sg,
-                          worm_ratio=machine.worm_ratio if machine is not None else None)
+        pattern = divided(
+            fresh,
+            setup.divide,
+            cut,
+            op=op,
+            name=name,
+            turn=placing.sg,
+            worm_ratio=machine.worm_ratio if machine is not None else None,
+        )
         target = replace(target, pattern=pattern)
         turn = table_turn(cut, op=op, name=name, radius=fresh.radius)
-    state = route.cut(placing, replace(target, op=op), machine_offset=error, machine_lean=Account(),
-                      dial=_dial(setup, cut, name, isinstance(node, Toothing)), index=turn)
+    state = route.cut(
+        placing,
+        replace(target, op=op),
+        machine_offset=error,
+        machine_lean=Account(),
+        dial=_dial(setup, cut, name, isinstance(node, Toothing)),
+        index=turn,
+    )
     source = before if before is not None else held.body.now(held.ref(cut.from_surface)) if cut.from_surface else None
     if source is not None:
         floor.stock[f"{op}/{name}"] = (source, state)
@@ -122,7 +158,11 @@ def _as_cut(state: State, cut: Cut, drawn_diameter: float | None, drawn_low: flo
         low = high = to if to is not None else drawn_low + state.facing * (cut.leave or 0.0)
     elif diameter is not None:
         outward = -1.0 if state.kind == "bore" else 1.0
-        left = cut.leave_on_diameter if cut.leave_on_diameter is not None else 2.0 * (cut.leave_on_radius or cut.leave or 0.0)
+        left = (
+            cut.leave_on_diameter
+            if cut.leave_on_diameter is not None
+            else 2.0 * (cut.leave_on_radius or cut.leave or 0.0)
+        )
         diameter = cut.to if cut.to is not None else diameter + outward * left
     return replace(state, low=low, high=high, diameter=diameter, rough=cut.state == "rough")
 
@@ -142,7 +182,9 @@ def _machine_error(floor: Floor, setup: Setup, name: str) -> Account:
     called, machine = machine_of(floor.loaded, setup)
     op = setup.op
     if machine is None:
-        return Account.of(Cause(f"op {op}, {name}: axis of the machine", "undetermined", op, missing=f"setups.{op}.machine"))
+        return Account.of(
+            Cause(f"op {op}, {name}: axis of the machine", "undetermined", op, missing=f"setups.{op}.machine")
+        )
     path = f"machines.{called}.axis_runout" if called in floor.loaded.job.machines else f"setups.{op}.machine"
     given = machine.axis_runout
     if given is None:
@@ -157,13 +199,19 @@ def _join(floor: Floor, setup: Setup, join: Join) -> None:
     outer, inner = loaded.ref(join.outer), loaded.ref(join.inner)
     body, other = floor.body(outer.part), floor.body(inner.part)
     if body is other:
-        raise floor.problem(f"setups.{op}.join", f"{outer.part} and {inner.part} are one piece already",
-                            "Write another outer or inner surface, or drop this step")
+        raise floor.problem(
+            f"setups.{op}.join",
+            f"{outer.part} and {inner.part} are one piece already",
+            "Write another outer or inner surface, or drop this step",
+        )
     bore, journal = body.now(outer), other.now(inner)
     for ref, state, key in ((outer, bore, "outer"), (inner, journal, "inner")):
         if state is None:
-            raise floor.problem(f"setups.{op}.join.{key}", f"{ref} is not made yet when operation {op} joins it",
-                                "Cut it in an earlier operation, or say what is `given` of the bought part")
+            raise floor.problem(
+                f"setups.{op}.join.{key}",
+                f"{ref} is not made yet when operation {op} joins it",
+                "Cut it in an earlier operation, or say what is `given` of the bought part",
+            )
     assert bore is not None and journal is not None
     face, shoulder, middle, spacer = _contact_faces(floor, setup, join, body, other)
     sense, shift = 1, bore.z - journal.z
@@ -171,30 +219,62 @@ def _join(floor: Floor, setup: Setup, join: Join) -> None:
         sense = 1 if face.facing == -shoulder.facing else -1
         shift = face.z + face.facing * middle - sense * shoulder.z
     seat = Seat(sense, shift, join.mounted_at)
-    turned = Cause(f"op {op}, angle at which {outer.part} was put on {inner.part}", "ring", op, high=1.0, mode="derived")
+    turned = Cause(
+        f"op {op}, angle at which {outer.part} was put on {inner.part}", "ring", op, high=1.0, mode="derived"
+    )
 
     def moved(state: State, offset: Account, lean: Account, axial: Account) -> State:
-        clock = Account.of(Cause(f"op {op}: where the parts are clocked", "undetermined", op,
-                                 missing=f"setups.{op}.join.mounted_at")).along(1) if join.mounted_at is None else Account()
+        clock = (
+            Account.of(
+                Cause(
+                    f"op {op}: where the parts are clocked", "undetermined", op, missing=f"setups.{op}.join.mounted_at"
+                )
+            ).along(1)
+            if join.mounted_at is None
+            else Account()
+        )
         return route.joined(state, seat, offset=offset, lean=lean, axial=axial, clock=clock, unknown=turned)
 
     still = Account()
-    lean = _joint_lean(op, join, bore, moved(journal, still, still, still), face,
-                       moved(shoulder, still, still, still) if shoulder is not None else None)
+    lean = _joint_lean(
+        op,
+        join,
+        bore,
+        moved(journal, still, still, still),
+        face,
+        moved(shoulder, still, still, still) if shoulder is not None else None,
+    )
     level = moved(journal, still, lean, still)
     offset = bore.axis_at(bore.z) - _fit_error(op, join, bore) - level.axis_at(bore.z)
-    axial = Account.of(Cause(f"op {op}: where the joint is stopped", "undetermined", op, missing=f"setups.{op}.join.stop")).along(1)
+    axial = Account.of(
+        Cause(f"op {op}: where the joint is stopped", "undetermined", op, missing=f"setups.{op}.join.stop")
+    ).along(1)
     if face is not None and shoulder is not None:
         met = moved(shoulder, offset, lean, still)
-        radius = min(d / 2.0 for d in (face.diameter, shoulder.diameter) if d) if face.diameter or shoulder.diameter else 0.0
+        radius = (
+            min(d / 2.0 for d in (face.diameter, shoulder.diameter) if d) if face.diameter or shoulder.diameter else 0.0
+        )
         lift = Account()
         if join.square != "shoulder":
             if radius:
-                lift = Account.of(route.high_point(f"op {op}, {outer.part} on {inner.part}: faces meet at the high point",
-                                                   face=face, lean=met.lean, radius=radius, op=op))
+                lift = Account.of(
+                    route.high_point(
+                        f"op {op}, {outer.part} on {inner.part}: faces meet at the high point",
+                        face=face,
+                        lean=met.lean,
+                        radius=radius,
+                        op=op,
+                    )
+                )
             else:
-                lift = Account.of(Cause(f"op {op}, {outer.part} on {inner.part}: where the faces touch", "undetermined", op,
-                                        missing=f"parts.{inner.part}.surfaces.{shoulder.name}.diameter")).along(1)
+                lift = Account.of(
+                    Cause(
+                        f"op {op}, {outer.part} on {inner.part}: where the faces touch",
+                        "undetermined",
+                        op,
+                        missing=f"parts.{inner.part}.surfaces.{shoulder.name}.diameter",
+                    )
+                ).along(1)
         axial = face.axial + (spacer + lift) * float(face.facing) - met.axial
     for states in other.states.values():
         for state in states:
@@ -207,8 +287,9 @@ def _join(floor: Floor, setup: Setup, join: Join) -> None:
             floor.bodies[name] = body
 
 
-def _contact_faces(floor: Floor, setup: Setup, join: Join, body: Body, other: Body
-                   ) -> tuple[State | None, State | None, float, Account]:
+def _contact_faces(
+    floor: Floor, setup: Setup, join: Join, body: Body, other: Body
+) -> tuple[State | None, State | None, float, Account]:
     """(outer's face, inner's face, length of the spacers between them, its error); None where no stop is stated."""
     if join.stop is None:
         return None, None, 0.0, Account()
@@ -219,18 +300,27 @@ def _contact_faces(floor: Floor, setup: Setup, join: Join, body: Body, other: Bo
     face, shoulder = body.now(on), other.now(against)
     for ref, state, key in ((on, face, "on"), (against, shoulder, "against")):
         if state is None or not state.facing:
-            raise floor.problem(f"{path}.{key}", f"{ref} is no face that is there when operation {setup.op} joins",
-                                f"Write a finished face of the {'outer' if key == 'on' else 'inner'} part")
+            raise floor.problem(
+                f"{path}.{key}",
+                f"{ref} is no face that is there when operation {setup.op} joins",
+                f"Write a finished face of the {'outer' if key == 'on' else 'inner'} part",
+            )
     middle, error = 0.0, Account()
     for i, spacer in enumerate(join.stop.spacers):
-        length, one = size_error(spacer.length, Entry(f"op {setup.op}, {spacer.name}", setup.op, f"{path}.spacers.{i}.length", ""))
+        length, one = size_error(
+            spacer.length, Entry(f"op {setup.op}, {spacer.name}", setup.op, f"{path}.spacers.{i}.length", "")
+        )
         middle, error = middle + length, error + one
     if join.stop.error is not None:
-        error += length_error(join.stop.error, Entry(f"op {setup.op}, seating of {on.surface}", setup.op, f"{path}.error", ""))
+        error += length_error(
+            join.stop.error, Entry(f"op {setup.op}, seating of {on.surface}", setup.op, f"{path}.error", "")
+        )
     return face, shoulder, middle, error
 
 
-def _joint_lean(op: int, join: Join, bore: State, journal: State, face: State | None, shoulder: State | None) -> Account:
+def _joint_lean(
+    op: int, join: Join, bore: State, journal: State, face: State | None, shoulder: State | None
+) -> Account:
     """tau: the lean the inner frame takes on, from the long fit (`bore`) or from the faces (`shoulder`)."""
     if join.square == "bore":
         return bore.lean - journal.lean
@@ -245,11 +335,15 @@ def _fit_error(op: int, join: Join, bore: State) -> Account:
     total, path = Account(), f"setups.{op}.join"
     name = f"op {op}, {bore.name} on its seat"
     if join.clearance is not None or join.by == "slide":
-        total += play(join.clearance, Entry(f"{name}: clearance", op, f"{path}.clearance", join.by), rests=join.rests or "free")
+        total += play(
+            join.clearance, Entry(f"{name}: clearance", op, f"{path}.clearance", join.by), rests=join.rests or "free"
+        )
     if join.fit_error is not None or join.by in ("taper", "screw", "bond"):
-        total += run_out(join.fit_error, Entry(f"{name}: run-out", op, f"{path}.fit_error", join.by), inside=True,
-                         towards=Towards(), turned=Turned())
+        total += run_out(
+            join.fit_error,
+            Entry(f"{name}: run-out", op, f"{path}.fit_error", join.by),
+            inside=True,
+            towards=stated_direction(join.fit_error.high_at if join.fit_error is not None else None),
+            turned=Turned(),
+        )
     return total
-
-
-

@@ -7,8 +7,8 @@ from dataclasses import dataclass
 from setupcheck.jobfile.models import Deviation
 from setupcheck.jobfile.setups import Centre, Clock, Cut, Setup, Square, Stop
 from setupcheck.quantities.book import Scope
+from setupcheck.quantities.requirements import Stack, read_stack
 from setupcheck.quantities.shop import Floor
-from setupcheck.quantities.stacks import Stack, read_stack
 
 
 @dataclass(frozen=True, slots=True)

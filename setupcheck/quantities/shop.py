@@ -8,9 +8,9 @@ from setupcheck.errors import JobError, Problem
 from setupcheck.jobfile.models import Flat, Pattern, Round, Surface, Throat, Toothing
 from setupcheck.jobfile.names import Ref
 from setupcheck.jobfile.reading import LoadedJob
+from setupcheck.ledger import route
 from setupcheck.ledger.causes import Cause
 from setupcheck.ledger.route import Placing, State
-from setupcheck.ledger import route
 
 
 @dataclass(frozen=True, slots=True)
@@ -73,8 +73,11 @@ class Floor:
     def problem(self, path: str, text: str, hint: str) -> JobError:
         """An error of the job file found while walking the route."""
         place = self.loaded.tree.place(self.loaded.loc(path))
-        return JobError(self.loaded.tree.file, self.loaded.tree.lines,
-                        (Problem(path, place.line, place.column, place.length, text, hint),))
+        return JobError(
+            self.loaded.tree.file,
+            self.loaded.tree.lines,
+            (Problem(path, place.line, place.column, place.length, text, hint),),
+        )
 
 
 @dataclass(frozen=True, slots=True)
@@ -113,8 +116,19 @@ def tooth_pattern(surface: Surface, pressure_angle: float | None) -> route.Patte
 def unknown_surface(part: str, name: str, surface: Surface, missing: str, pressure_angle: float | None) -> State:
     """A surface about which nothing is stated: four undetermined causes of its own, named after what would settle them."""
     shape = outline(surface)
-    causes = tuple(Cause(f"{part}.{name}: {what}", "undetermined", missing=missing)
-                   for what in ("where its axis stands", "how it leans", "its length", "its angle"))
+    causes = tuple(
+        Cause(f"{part}.{name}: {what}", "undetermined", missing=missing)
+        for what in ("where its axis stands", "how it leans", "its length", "its angle")
+    )
     assert len(causes) == 4
-    return route.untouched(part, name, kind=shape.kind, low=shape.low, high=shape.high, diameter=shape.diameter,
-                           facing=shape.facing, causes=causes, pattern=tooth_pattern(surface, pressure_angle))
+    return route.untouched(
+        part,
+        name,
+        kind=shape.kind,
+        low=shape.low,
+        high=shape.high,
+        diameter=shape.diameter,
+        facing=shape.facing,
+        causes=causes,
+        pattern=tooth_pattern(surface, pressure_angle),
+    )

@@ -1,4 +1,4 @@
-"""From a requirement to its figure: what is asked, between which surfaces, in which unit, with which limits. mm, rad."""
+"""From a requirement to its figure: which relation of which surfaces, and what is missing for it. mm, rad."""
 
 from __future__ import annotations
 
@@ -6,38 +6,18 @@ import math
 from collections.abc import Callable
 from dataclasses import dataclass
 
-from setupcheck.jobfile.models import Require
 from setupcheck.jobfile.names import Ref
-from setupcheck.ledger import figures, route
+from setupcheck.ledger import figures, holes, route, teeth
 from setupcheck.ledger.account import Account
 from setupcheck.ledger.figures import Figure
 from setupcheck.ledger.route import State
-from setupcheck.physics.gear_grades import LIMITS, grade_limit
 from setupcheck.quantities.book import Open
 from setupcheck.quantities.causes import Entry, size_error
+from setupcheck.quantities.requirements import Stack
 from setupcheck.quantities.shop import Floor
 
 NOT_YET = ("backlash", "contact-length", "contact-area", "torque")
 """Figures a job file may ask for that this version does not compute; their findings are open."""
-
-
-@dataclass(frozen=True, slots=True)
-class Stack:
-    """One requirement with its instance name and how it is shown.
-
-    unit   display unit (um, mm, arcsec);  kind "length" or "angle" of its limits
-    low, high  limits in base units (mm or rad), None where there is none
-    """
-
-    name: str
-    index: int
-    require: Require
-    unit: str
-    digits: int
-    low: float | None
-    high: float | None
-    of: str
-    about: str
 
 
 @dataclass(frozen=True, slots=True)
@@ -49,77 +29,6 @@ class Built:
 
     figure: Figure
     second_order: float
-
-
-LENGTHS = {"run-out", "face-run-out", "coaxial", "cumulative-pitch", "single-pitch", "gap-centre-pitch", "on-workpiece",
-           "position", "chord", "pitch-circle", "mid-plane", "backlash", "backlash-swing", "length", "allowance"}
-ANGLES = {"index-range", "index-within"}
-
-
-def dimension_of(require: Require) -> str:
-    """Kind of unit a requirement's limits have: length, angle, torque or fraction."""
-    if require.what in LENGTHS or require.what == "squareness" and require.across is not None:
-        return "length"
-    if require.what in ANGLES or require.what == "squareness":
-        return "angle"
-    return "torque" if require.what == "torque" else "fraction"
-
-
-def read_stack(floor: Floor, index: int) -> Stack:
-    """Limits, unit and name of requirement `index`.
-
-    Raises: JobError where a limit has the wrong kind of unit, or a surface of the wrong kind is asked.
-    """
-    require, path = floor.loaded.job.require[index], f"require.{index}"
-    kind = dimension_of(require)
-    limits = {"at_most": require.at_most, "at_least": require.at_least}
-    if require.between is not None:
-        limits = {"between": require.between[0], "between ": require.between[1]}
-    for key, amount in limits.items():
-        # a bare number takes the file's units for lengths, as every size does
-        if amount is not None and amount.dimension != kind and not (kind == "fraction" and amount.dimension == "number"):
-            raise floor.problem(f"{path}.{key.strip()}", f"a limit of {require.what} is a {kind}, not a {amount.dimension}",
-                                f"Write it as in {_example(kind)}")
-    if require.between is not None:
-        low, high = require.between[0].value, require.between[1].value
-    else:
-        low = require.at_least.value if require.at_least is not None else None
-        high = require.at_most.value if require.at_most is not None else None
-    if require.grade is not None:
-        high = _grade(floor, require, path)
-    unit, digits = {"angle": ("arcsec", 1), "torque": ("N*m", 1), "fraction": ("%", 0)}.get(kind, ("um", 1))
-    if require.what in ("length", "backlash"):
-        unit, digits = "mm", 4
-    if require.what == "allowance":
-        unit, digits = "mm", 3
-    about = require.about or (floor.loaded.job.place.axis if floor.loaded.job.place is not None else None) or ""
-    of = require.of or (floor.loaded.job.mesh.wheel if floor.loaded.job.mesh is not None and require.what == "mid-plane" else "") or ""
-    name = require.name or ".".join(x for x in (require.what, of.replace(".", "-"), _short(about)) if x)
-    return Stack(name, index, require, unit, digits, low, high, of, about)
-
-
-def _short(text: str) -> str:
-    return text.replace(".", "-")
-
-
-def _example(kind: str) -> str:
-    return {"length": "40 um", "angle": '75"', "torque": "40 N m", "fraction": "25 %"}[kind]
-
-
-def _grade(floor: Floor, require: Require, path: str) -> float:
-    """Limit [mm] of ISO 1328-1:1995 or -2:1997 for a cylindrical gear of the stated grade."""
-    if require.what not in LIMITS:
-        raise floor.problem(f"{path}.grade", f"a grade says nothing about {require.what}", f"Write it for one of: {', '.join(LIMITS)}")
-    ref = floor.loaded.ref(require.of or "")
-    node = floor.loaded.job.parts[ref.part].surfaces[ref.surface]
-    module = getattr(node, "module", None)
-    if node.kind != "teeth" or module is None:
-        raise floor.problem(f"{path}.grade", "a grade needs the module of the teeth it speaks of", "Write module: 1.5 at the teeth")
-    assert require.grade is not None
-    try:
-        return grade_limit(require.what, module=module, reference_diameter=node.on_circle, grade=require.grade)  # type: ignore[union-attr]
-    except ValueError as why:
-        raise floor.problem(f"{path}.grade", str(why), "Write the limit itself: at_most: 40 um") from None
 
 
 def build(floor: Floor, stack: Stack) -> Built | Open:
@@ -145,7 +54,11 @@ def _state(floor: Floor, stack: Stack, text: str, key: str) -> State | Open:
     if state is None:
         made = floor.now(Ref(ref.part, ref.surface))
         if made is not None:
-            raise floor.problem(path, f"operation {ref.op} does not cut {ref.part}.{ref.surface}", "Write the op that cuts it after the @")
+            raise floor.problem(
+                path,
+                f"operation {ref.op} does not cut {ref.part}.{ref.surface}",
+                "Write the op that cuts it after the @",
+            )
         return Open((path,), f"{ref.part}.{ref.surface} is never made in this route")
     return state
 
@@ -158,8 +71,11 @@ def _pair(floor: Floor, stack: Stack) -> tuple[State, State] | Open:
             return state
     assert isinstance(of, State) and isinstance(about, State)
     if floor.body(of.part) is not floor.body(about.part):
-        raise floor.problem(f"require.{stack.index}", f"{of.ref} and {about.ref} are never joined in this route",
-                            "Write the joining as a setup of its own")
+        raise floor.problem(
+            f"require.{stack.index}",
+            f"{of.ref} and {about.ref} are never joined in this route",
+            "Write the joining as a setup of its own",
+        )
     return of, about
 
 
@@ -176,11 +92,16 @@ def _vector(floor: Floor, stack: Stack) -> Built | Open:
         return pair
     g, r = pair
     at = stack.require.at
-    heights = (floor.z(g.part, at),) if at is not None else (
-        (g.low, g.high) if g.pattern is None and g.high > g.low else (g.z,))
+    heights = (
+        (floor.z(g.part, at),)
+        if at is not None
+        else ((g.low, g.high) if g.pattern is None and g.high > g.low else (g.z,))
+    )
     accounts = tuple(g.axis_at(z) - r.axis_at(z) for z in heights)
     lever = max(abs(z - r.z) for z in heights)
-    return Built(figures.Vector(accounts, 2.0), _second_order(lean=g.lean - r.lean, lever=max(lever, g.diameter or 0.0)))
+    return Built(
+        figures.Vector(accounts, 2.0), _second_order(lean=g.lean - r.lean, lever=max(lever, g.diameter or 0.0))
+    )
 
 
 def _lean(floor: Floor, stack: Stack) -> Built | Open:
@@ -206,7 +127,9 @@ def _teeth(floor: Floor, stack: Stack) -> Built | Open:
     g, r = pair
     what, pattern = stack.require.what, g.pattern
     if pattern is None:
-        raise floor.problem(f"require.{stack.index}.of", f"{g.ref} has no teeth or holes", "Write the name of a toothing")
+        raise floor.problem(
+            f"require.{stack.index}.of", f"{g.ref} has no teeth or holes", "Write the name of a toothing"
+        )
     flank = what not in ("gap-centre-pitch",) and g.kind == "teeth"
     if flank and pattern.pressure_angle is None:
         return Open((f"parts.{g.part}.surfaces.{g.name}.pressure_angle",))
@@ -215,9 +138,36 @@ def _teeth(floor: Floor, stack: Stack) -> Built | Open:
         if stack.require.on_diameter is None:
             return Open((f"require.{stack.index}.on_diameter",))
         factor = stack.require.on_diameter / (2.0 * pattern.radius)
-    offset = g.offset - r.axis_at(g.z)
-    figure = figures.Tooth(offset, pattern, flank=flank, stepwise=what == "single-pitch", factor=factor)
+    offset = _as_meshed(floor, g, r)
+    if isinstance(offset, Open):
+        return offset
+    figure = figures.Tooth(
+        offset,
+        pattern,
+        flank=flank,
+        stepwise=what == "single-pitch",
+        factor=factor,
+        driven=what in ("index-range", "index-within", "on-workpiece"),
+    )
     return Built(figure, _second_order(lean=g.lean - r.lean, lever=abs(g.z - r.z)))
+
+
+def _as_meshed(floor: Floor, g: State, r: State) -> Account | Open:
+    """Eccentricity of a tooth ring, with what the wobble adds where the gaps run at the worm's lead angle."""
+    offset, mesh, worm = g.offset - r.axis_at(g.z), floor.loaded.job.mesh, floor.loaded.job.worm
+    if mesh is None or worm is None or g.pattern is None:
+        return offset
+    wheel = floor.loaded.ref(mesh.wheel)
+    if (wheel.part, wheel.surface) != (g.part, g.name):
+        return offset
+    missing = tuple(f"worm.{k}" for k in ("axial_module", "reference_diameter") if getattr(worm, k) is None)
+    if missing:
+        return Open(missing)
+    assert worm.axial_module is not None and worm.reference_diameter is not None
+    lead_angle = math.atan(worm.starts * worm.axial_module / worm.reference_diameter)
+    return teeth.oblique(
+        offset, g.lean - r.lean, radius=g.pattern.radius, lead_angle=lead_angle, right_hand=worm.hand != "left"
+    )
 
 
 def _backlash_swing(floor: Floor, stack: Stack) -> Built | Open:
@@ -229,8 +179,10 @@ def _backlash_swing(floor: Floor, stack: Stack) -> Built | Open:
     if g.pattern is None or g.pattern.pressure_angle is None:
         return Open((f"parts.{g.part}.surfaces.{g.name}.pressure_angle",))
     offset = g.offset - r.axis_at(g.z)
-    return Built(figures.Vector((offset,), 4.0 * math.tan(g.pattern.pressure_angle)),
-                 _second_order(lean=g.lean - r.lean, lever=abs(g.z - r.z)))
+    return Built(
+        figures.Vector((offset,), 4.0 * math.tan(g.pattern.pressure_angle)),
+        _second_order(lean=g.lean - r.lean, lever=abs(g.z - r.z)),
+    )
 
 
 def _holes(floor: Floor, stack: Stack) -> Built | Open:
@@ -241,11 +193,13 @@ def _holes(floor: Floor, stack: Stack) -> Built | Open:
         return g
     pattern = g.pattern
     if pattern is None or g.kind == "teeth":
-        raise floor.problem(f"require.{stack.index}.of", f"{g.ref} is no pattern of holes", "Write the name of a hole pattern")
+        raise floor.problem(
+            f"require.{stack.index}.of", f"{g.ref} is no pattern of holes", "Write the name of a hole pattern"
+        )
     if what == "chord":
-        return Built(figures.HoleChord(pattern), 0.0)
+        return Built(holes.HoleChord(pattern), 0.0)
     if what == "pitch-circle":
-        return Built(figures.PitchCircle(pattern), 0.0)
+        return Built(holes.PitchCircle(pattern), 0.0)
     pair = _pair(floor, stack)
     if isinstance(pair, Open):
         return pair
@@ -256,10 +210,14 @@ def _holes(floor: Floor, stack: Stack) -> Built | Open:
         if isinstance(key, Open):
             return key
         if key.pattern is None:
-            raise floor.problem(f"require.{stack.index}.clock", f"{key.ref} gives no angle", "Write a slot, hole pattern or toothing")
+            raise floor.problem(
+                f"require.{stack.index}.clock", f"{key.ref} gives no angle", "Write a slot, hole pattern or toothing"
+            )
         turn = g.clock - _angle_about(key, r)
-    return Built(figures.HolePosition(g.offset - r.axis_at(g.z), pattern, turn),
-                 _second_order(lean=g.lean - r.lean, lever=abs(g.z - r.z)))
+    return Built(
+        holes.HolePosition(g.offset - r.axis_at(g.z), pattern, turn),
+        _second_order(lean=g.lean - r.lean, lever=abs(g.z - r.z)),
+    )
 
 
 def _angle_about(key: State, axis: State) -> Account:
@@ -283,11 +241,18 @@ def _mid_plane(floor: Floor, stack: Stack) -> Built | Open:
     if isinstance(face, Open):
         return Open(("place.worm_axis.from",), face.because)
     if not face.facing:
-        raise floor.problem("place.worm_axis.from", f"{face.ref} is no face", "Write the face the worm's axis is measured from")
+        raise floor.problem(
+            "place.worm_axis.from", f"{face.ref} is no face", "Write the face the worm's axis is measured from"
+        )
     if floor.body(face.part) is not floor.body(g.part):
-        raise floor.problem("place.worm_axis.from", f"{face.ref} and {g.ref} are never joined in this route",
-                            "Write the joining as a setup of its own")
-    middle, error = size_error(place.worm_axis.length, Entry("housing, face to worm axis", None, "place.worm_axis.length", ""))
+        raise floor.problem(
+            "place.worm_axis.from",
+            f"{face.ref} and {g.ref} are never joined in this route",
+            "Write the joining as a setup of its own",
+        )
+    middle, error = size_error(
+        place.worm_axis.length, Entry("housing, face to worm axis", None, "place.worm_axis.length", "")
+    )
     sign = float(face.facing)
     axial = g.axial - face.axial - error * sign
     axial = axial.plus_constant(g.z - face.z - sign * middle)
@@ -304,17 +269,28 @@ def _length(floor: Floor, stack: Stack) -> Built | Open:
     way = 1.0 if g.z >= r.z else -1.0
     account = (g.axial - r.axial) * way
     lever = max((s.diameter or 0.0) for s in (g, r))
-    return Built(figures.Length(account.plus_constant(abs(g.z - r.z))), _second_order(lean=g.lean - r.lean, lever=lever))
+    return Built(
+        figures.Length(account.plus_constant(abs(g.z - r.z))), _second_order(lean=g.lean - r.lean, lever=lever)
+    )
 
 
 def _allowance(floor: Floor, stack: Stack) -> Built | Open:
     """Radial stock left where the cut is thinnest."""
     ref = floor.loaded.ref(stack.of)
-    ops = [int(key.partition("/")[0]) for key, (_, after) in floor.stock.items()
-           if (after.part, after.name) == (ref.part, ref.surface) and ref.op in (None, after.op)]
+    ops = [
+        int(key.partition("/")[0])
+        for key, (_, after) in floor.stock.items()
+        if (after.part, after.name) == (ref.part, ref.surface) and ref.op in (None, after.op)
+    ]
     if not ops:
-        return Open((f"require.{stack.index}.of",), f"{ref} is cut out of nothing that is known: no earlier state of it")
-    key = next(k for k, (_, after) in floor.stock.items() if after.op == ops[-1] and (after.part, after.name) == (ref.part, ref.surface))
+        return Open(
+            (f"require.{stack.index}.of",), f"{ref} is cut out of nothing that is known: no earlier state of it"
+        )
+    key = next(
+        k
+        for k, (_, after) in floor.stock.items()
+        if after.op == ops[-1] and (after.part, after.name) == (ref.part, ref.surface)
+    )
     return stock_left(floor, key)
 
 
@@ -341,11 +317,21 @@ def stock_left(floor: Floor, key: str) -> Built | Open:
 
 
 _FIGURES: dict[str, Callable[[Floor, Stack], Built | Open]] = {
-    "run-out": _vector, "coaxial": _vector, "face-run-out": _lean, "squareness": _lean,
-    "cumulative-pitch": _teeth, "single-pitch": _teeth, "gap-centre-pitch": _teeth, "index-range": _teeth,
-    "index-within": _teeth, "on-workpiece": _teeth, "backlash-swing": _backlash_swing,
-    "position": _holes, "chord": _holes, "pitch-circle": _holes, "mid-plane": _mid_plane, "length": _length,
+    "run-out": _vector,
+    "coaxial": _vector,
+    "face-run-out": _lean,
+    "squareness": _lean,
+    "cumulative-pitch": _teeth,
+    "single-pitch": _teeth,
+    "gap-centre-pitch": _teeth,
+    "index-range": _teeth,
+    "index-within": _teeth,
+    "on-workpiece": _teeth,
+    "backlash-swing": _backlash_swing,
+    "position": _holes,
+    "chord": _holes,
+    "pitch-circle": _holes,
+    "mid-plane": _mid_plane,
+    "length": _length,
     "allowance": _allowance,
 }
-
-

@@ -19,6 +19,6 @@ def print_coloured(text: str) -> None:
         if word.lower() in TINTS:
             start = line.index(word)
             shown.stylize(TINTS[word.lower()], start, start + len(word))
-        elif line and line == line.upper() and line[0].isalpha() or line.startswith(("WHAT WAS", "DIAL READING")):
+        elif (line and line == line.upper() and line[0].isalpha()) or line.startswith(("WHAT WAS", "DIAL READING")):
             shown.stylize("bold")
         console.print(shown)

@@ -46,11 +46,30 @@ def as_data(found: Review) -> dict[str, object]:
         "counts": {v: found.evaluation.counts[v] for v in ("pass", "warn", "fail", "open", "waived")},
         "quantities": _quantities(found),
         "stacks": [_stack(found, scope) for scope in found.book.instances("stack")],
-        "gates": [{"at": g.key, "op": g.op, "on": g.on, "reading": _shown(g.reading, "um"), "planned": _shown(g.planned, "um"),
-                   "unit": "um", "by": g.by} for g in found.gates],
+        "gates": [
+            {
+                "at": g.key,
+                "op": g.op,
+                "on": g.on,
+                "reading": _shown(g.reading, "um"),
+                "planned": _shown(g.planned, "um"),
+                "unit": "um",
+                "by": g.by,
+            }
+            for g in found.gates
+        ],
         "findings": [_finding(f) for f in found.evaluation.findings],
-        "cautions": [{"id": c.id, "op": c.op, "severity": c.severity, "state": clean(c.state), "text": c.text,
-                      "source": c.source} for c in found.evaluation.cautions],
+        "cautions": [
+            {
+                "id": c.id,
+                "op": c.op,
+                "severity": c.severity,
+                "state": clean(c.state),
+                "text": c.text,
+                "source": c.source,
+            }
+            for c in found.evaluation.cautions
+        ],
     }
 
 
@@ -74,12 +93,20 @@ def _quantities(found: Review) -> dict[str, object]:
     """Every quantity that the review looked at and that is a number or a word."""
     out: dict[str, object] = {}
     for (name, scope), answer in sorted(found.book.made.items(), key=lambda item: (item[0][0], item[0][1].key)):
-        if not isinstance(answer, Known) or isinstance(answer.value, bool) or not isinstance(answer.value, float | int | str):
+        if (
+            not isinstance(answer, Known)
+            or isinstance(answer.value, bool)
+            or not isinstance(answer.value, float | int | str)
+        ):
             continue
         unit = METRIC.get(found.book.unit(name, scope), found.book.unit(name, scope))
         value: Value = _shown(float(answer.value), unit) if isinstance(answer.value, float | int) else answer.value
         out[f"{name}@{scope.key}" if scope.key else name] = {
-            "value": value, "unit": unit, "rests_on": sorted(answer.rests_on), "lines": [scope.line] if scope.line else []}
+            "value": value,
+            "unit": unit,
+            "rests_on": sorted(answer.rests_on),
+            "lines": [scope.line] if scope.line else [],
+        }
     return out
 
 
@@ -87,8 +114,13 @@ def _stack(found: Review, scope: Scope) -> dict[str, object]:
     stack = stack_of(scope)
     unit = METRIC.get(stack.unit, stack.unit)
     head: dict[str, object] = {
-        "name": scope.key, "what": stack.require.what, "of": stack.of or None, "about": stack.about or None,
-        "limit": {"low": _shown(stack.low, unit), "high": _shown(stack.high, unit)}, "unit": unit}
+        "name": scope.key,
+        "what": stack.require.what,
+        "of": stack.of or None,
+        "about": stack.about or None,
+        "limit": {"low": _shown(stack.low, unit), "high": _shown(stack.high, unit)},
+        "unit": unit,
+    }
     result = found.results.get(scope.key)
     if result is None:
         return {**head, "worst": None, "rss": None, "likely": None, "chance": None, "chance_error": None, "causes": []}
@@ -103,8 +135,16 @@ def _combined(result: Result, unit: str) -> dict[str, object]:
         "likely": _ends(c.likely.low, c.likely.high, unit, signed=signed),
         "chance": _number(c.chance) if c.chance is not None else None,
         "chance_error": _number(c.chance_error) if c.chance_error is not None else None,
-        "causes": [{"cause": s.cause.key, "op": s.cause.op, "mode": s.cause.mode, "worst": _shown(s.worst, unit),
-                    "share": _number(s.share)} for s in c.shares],
+        "causes": [
+            {
+                "cause": s.cause.key,
+                "op": s.cause.op,
+                "mode": s.cause.mode,
+                "worst": _shown(s.worst, unit),
+                "share": _number(s.share),
+            }
+            for s in c.shares
+        ],
     }
 
 
@@ -117,9 +157,21 @@ def _finding(f: Finding) -> dict[str, object]:
         return _shown(float(value), unit) if isinstance(value, float | int) else value
 
     return {
-        "rule": f.rule, "at": f.at, "op": f.op, "line": f.line, "verdict": f.verdict, "quantity": f.quantity,
-        "value": shown(f.value), "limit": shown(f.limit), "margin": shown(f.margin), "unit": unit,
-        "missing": list(f.missing), "message": clean(f.message), "remedy": f.remedy,
-        "sources": [{"ref": s.ref, "place": s.place, "kind": s.kind} for s in f.sources], "evidence": f.evidence,
-        "rests_on": list(f.rests_on), "waiver": clean(f.waiver) if f.waiver else None,
+        "rule": f.rule,
+        "at": f.at,
+        "op": f.op,
+        "line": f.line,
+        "verdict": f.verdict,
+        "quantity": f.quantity,
+        "value": shown(f.value),
+        "limit": shown(f.limit),
+        "margin": shown(f.margin),
+        "unit": unit,
+        "missing": list(f.missing),
+        "message": clean(f.message),
+        "remedy": f.remedy,
+        "sources": [{"ref": s.ref, "place": s.place, "kind": s.kind} for s in f.sources],
+        "evidence": f.evidence,
+        "rests_on": list(f.rests_on),
+        "waiver": clean(f.waiver) if f.waiver else None,
     }

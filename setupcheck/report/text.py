@@ -25,8 +25,14 @@ def as_text(found: Review, *, everything: bool = False) -> str:
     everything  passed findings, all causes and all cautions as well
     """
     lines: list[str] = []
-    for part in (_head(found), _stops(found), _findings(found, everything), _requirements(found, everything),
-                 _gates(found), _cautions(found, everything)):
+    for part in (
+        _head(found),
+        _stops(found),
+        _findings(found, everything),
+        _requirements(found, everything),
+        _gates(found),
+        _cautions(found, everything),
+    ):
         block = list(part)
         if block:
             lines += [*block, ""]
@@ -47,8 +53,10 @@ def _head(found: Review) -> Iterator[str]:
     yield f"{found.verdict.upper()}   {counts(found)}"
     unanswered = [c for c in found.evaluation.cautions if c.severity == "stop-and-check" and not c.answered]
     if unanswered and found.evaluation.counts["fail"] == 0:
-        yield from wrap(f"Open until {_many(len(unanswered), 'stop-and-check caution is', 'stop-and-check cautions are')} "
-                        "answered under `checked` in the job file.")
+        yield from wrap(
+            f"Open until {_many(len(unanswered), 'stop-and-check caution is', 'stop-and-check cautions are')} "
+            "answered under `checked` in the job file."
+        )
 
 
 def _many(n: int, one: str, more: str) -> str:
@@ -66,7 +74,9 @@ def _stops(found: Review) -> Iterator[str]:
 def _caution(caution: CautionLine) -> Iterator[str]:
     where = f"op {caution.op}" if caution.op is not None else "job"
     because = f" ({clean(caution.because)})" if caution.because else ""
-    yield from wrap(f"{where}, {caution.id} [{clean(caution.state)}]: {caution.text}{because}", first="  ", rest="      ")
+    yield from wrap(
+        f"{where}, {caution.id} [{clean(caution.state)}]: {caution.text}{because}", first="  ", rest="      "
+    )
 
 
 def _findings(found: Review, everything: bool) -> Iterator[str]:
@@ -79,8 +89,11 @@ def _findings(found: Review, everything: bool) -> Iterator[str]:
 
 
 def _finding(found: Review, finding: Finding) -> Iterator[str]:
-    head = f"{finding.verdict}  {finding.rule}  {finding.at or 'job'}, line {finding.line}" if finding.line else (
-        f"{finding.verdict}  {finding.rule}  {finding.at or 'job'}")
+    head = (
+        f"{finding.verdict}  {finding.rule}  {finding.at or 'job'}, line {finding.line}"
+        if finding.line
+        else (f"{finding.verdict}  {finding.rule}  {finding.at or 'job'}")
+    )
     yield from wrap(head, first="  ", rest="        ")
     yield from wrap(clean(finding.message) + "." + _margin(finding), first="      ", rest="      ")
     if finding.verdict == "pass":
@@ -93,8 +106,11 @@ def _finding(found: Review, finding: Finding) -> Iterator[str]:
     if remedy and finding.verdict != "waived":
         yield from wrap(f"Do: {remedy}", first="      ", rest="          ")
     if finding.verdict == "open" and finding.missing:
-        yield from wrap("Fill: " + ", ".join(finding.missing[:4]) + (" …" if len(finding.missing) > 4 else ""),
-                        first="      ", rest="          ")
+        yield from wrap(
+            "Fill: " + ", ".join(finding.missing[:4]) + (" …" if len(finding.missing) > 4 else ""),
+            first="      ",
+            rest="          ",
+        )
     if finding.rests_on:
         yield from wrap("Rests on typical values: " + ", ".join(finding.rests_on) + ".", first="      ", rest="      ")
     if finding.house:
@@ -117,17 +133,22 @@ def _remedy(changes: list[Change], *, inches: bool) -> str:
     told = []
     for change in changes:
         unit, digits = finer(change.unit, inches=inches)
-        told.append(f"bring the {cause_in_words(change.cause.key)} from {in_unit(change.now, unit, digits)} down to "
-                    f"{show(change.needed, unit, digits)} ({change.path})")
+        told.append(
+            f"bring the {cause_in_words(change.cause.key)} from {in_unit(change.now, unit, digits)} down to "
+            f"{show(change.needed, unit, digits)} ({change.path})"
+        )
     text = "; and ".join(told)
     return text[:1].upper() + text[1:] + ". Or cut both surfaces in one holding, so that it drops out."
 
 
 def _share(found: Review, result: Result, most: int) -> list[str]:
     unit, digits = finer(result.stack.unit, inches=found.book.inches)
-    return [f"{cause_in_words(s.cause.key)} {show(s.worst, unit, digits)}"
-            + (" measured" if s.cause.mode == "measured" else " typical" if s.cause.mode == "typical" else "")
-            for s in result.combined.shares[:most] if s.worst > 0.0]
+    return [
+        f"{cause_in_words(s.cause.key)} {show(s.worst, unit, digits)}"
+        + (" measured" if s.cause.mode == "measured" else " typical" if s.cause.mode == "typical" else "")
+        for s in result.combined.shares[:most]
+        if s.worst > 0.0
+    ]
 
 
 def _requirements(found: Review, everything: bool) -> Iterator[str]:
@@ -159,8 +180,10 @@ def limits_in_words(result: Result, unit: str, digits: int) -> str:
     """The worst value on its own limit's scale: `25.3 of 30.0 um`, `0.274, at least 0.200 mm`, `8.01 .. 8.03 within …`."""
     worst, stack = result.combined.worst, result.stack
     if stack.low is not None and stack.high is not None:
-        return (f"{in_unit(worst.low, unit, digits)} to {in_unit(worst.high, unit, digits)} within "
-                f"{in_unit(stack.low, unit, digits)} to {show(stack.high, unit, digits)}")
+        return (
+            f"{in_unit(worst.low, unit, digits)} to {in_unit(worst.high, unit, digits)} within "
+            f"{in_unit(stack.low, unit, digits)} to {show(stack.high, unit, digits)}"
+        )
     if stack.low is not None:
         return f"{in_unit(worst.low, unit, digits)}, at least {show(stack.low, unit, digits)} asked"
     if stack.high is not None:
@@ -240,6 +263,10 @@ def _cautions(found: Review, everything: bool) -> Iterator[str]:
         fresh = [c for c in mine if everything or c.id not in told][: None if everything else CAUTIONS_SHOWN]
         for caution in fresh:
             told.add(caution.id)
-            also = [o for o in ops if o != op and any(c.op == o and c.id == caution.id for c in rest)] if not everything else []
+            also = (
+                [o for o in ops if o != op and any(c.op == o and c.id == caution.id for c in rest)]
+                if not everything
+                else []
+            )
             where = f"op {op}" + (f" (and {', '.join(str(o) for o in also)})" if also else "")
             yield from wrap(f"{where}: {caution.text}", first="  ", rest="      ")

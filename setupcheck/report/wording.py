@@ -35,8 +35,9 @@ def finer(unit: str, *, inches: bool) -> tuple[str, int]:
 
 def wrap(text: str, *, first: str = "", rest: str = "") -> list[str]:
     """Lines of at most 80 columns."""
-    return textwrap.wrap(text, WIDTH, initial_indent=first, subsequent_indent=rest, break_long_words=False,
-                         break_on_hyphens=False) or [first.rstrip()]
+    return textwrap.wrap(
+        text, WIDTH, initial_indent=first, subsequent_indent=rest, break_long_words=False, break_on_hyphens=False
+    ) or [first.rstrip()]
 
 
 def cause_in_words(key: str) -> str:

@@ -15,10 +15,17 @@ from setupcheck.quantities.scopes import stack_of
 from setupcheck.report.wording import clean, finer, wrap
 
 LAWS = {
-    "disc": "anywhere within its bound", "ring": "this size, direction unknown", "blur": "measured, direction known",
-    "clearance-disc": "anywhere in the play", "clearance-ring": "against the wall of the play", "rectangle": "within ± on two axes",
-    "length": "anywhere within ±", "gauss": "Gaussian, cut at 3 standard deviations", "one-sided": "one way only",
-    "high-point": "follows the lean", "undetermined": "not known",
+    "disc": "anywhere within its bound",
+    "ring": "this size, direction unknown",
+    "blur": "measured, direction known",
+    "clearance-disc": "anywhere in the play",
+    "clearance-ring": "against the wall of the play",
+    "rectangle": "within ± on two axes",
+    "length": "anywhere within ±",
+    "gauss": "Gaussian, cut at 3 standard deviations",
+    "one-sided": "one way only",
+    "high-point": "follows the lean",
+    "undetermined": "not known",
 }
 
 
@@ -71,7 +78,9 @@ def _working(loaded: LoadedJob, book: Book, quantity: Quantity, scope: Scope) ->
     answer = book.get(quantity.name, scope)
     where = f"@{scope.key}" if scope.key else ""
     yield from wrap(f"{quantity.name}{where} = {_answer(book, quantity.name, scope, answer)}")
-    yield from wrap(f"{quantity.says}" + (f"; asked in line {scope.line}" if scope.line > 1 else ""), first="  ", rest="  ")
+    yield from wrap(
+        f"{quantity.says}" + (f"; asked in line {scope.line}" if scope.line > 1 else ""), first="  ", rest="  "
+    )
     yield from _formula(quantity)
     for argument, name in quantity.inputs.items():
         yield from _input(book, scope, argument, name)
@@ -98,7 +107,9 @@ def _input(book: Book, scope: Scope, argument: str, name: str) -> Iterator[str]:
         line = f" (line {scope.line})" if scope.line > 1 else ""
         yield from wrap(f"{argument}: {scope.path or 'the job'}{line}", first="    ", rest="      ")
         return
-    shown = _answer(book, name, scope, answer) if not name.startswith(":") else str(getattr(answer, "value", "not stated"))
+    shown = (
+        _answer(book, name, scope, answer) if not name.startswith(":") else str(getattr(answer, "value", "not stated"))
+    )
     yield from wrap(f"{argument}: {name} = {shown}", first="    ", rest="      ")
 
 
@@ -110,14 +121,18 @@ def _causes(loaded: LoadedJob, book: Book, result: Result, scope: Scope) -> Iter
     for share in result.combined.shares:
         lines = sorted({loaded.line(path) for path in share.cause.paths})
         stated = f" (line {', '.join(str(n) for n in lines)})" if lines else ""
-        yield from wrap(f"{share.cause.key}: gives {show(share.worst, unit, digits)}, {share.share * 100:.0f} % of all; "
-                        f"{_law(share.cause)}, {share.cause.mode}{stated}", first="    ", rest="      ")
+        yield from wrap(
+            f"{share.cause.key}: gives {show(share.worst, unit, digits)}, {share.share * 100:.0f} % of all; "
+            f"{_law(share.cause)}, {share.cause.mode}{stated}",
+            first="    ",
+            rest="      ",
+        )
     base = result.combined.base
     if base:
         yield from wrap(f"known part without any error: {show(base, unit, digits)}", first="    ", rest="      ")
 
 
 def _law(cause: Cause) -> str:
-    return LAWS[cause.law] + (f", known part {abs(cause.mean) * 1000:.2f} um" if cause.mean and not cause.is_real else "")
-
-
+    return LAWS[cause.law] + (
+        f", known part {abs(cause.mean) * 1000:.2f} um" if cause.mean and not cause.is_real else ""
+    )

@@ -15,6 +15,7 @@ from __future__ import annotations
 from collections.abc import Iterable, Sequence
 from dataclasses import replace
 
+from setupcheck.errors import RuleBookError
 from setupcheck.notation import nearest
 from setupcheck.rulebook.engine import engine_finding
 from setupcheck.rulebook.house import is_date
@@ -26,10 +27,10 @@ def waived(
 ) -> list[Finding]:
     """The findings with the waivers that are in force put in, and a finding for every waiver that is not.
 
-    on  ISO date text of the day of judging, None when none was given.  Raises: ValueError when it is no date.
+    on  ISO date text of the day of judging, None when none was given.  Raises: RuleBookError when it is no date.
     """
     if on is not None and not is_date(on):
-        raise ValueError(f"the day of judging has to be year-month-day, not {on!r}")
+        raise RuleBookError("--on", 0, f"'{on}' is not a date", "Write year-month-day, as in 2027-03-31")
     judged = list(findings)
     about: list[Finding] = []
     for waiver in waivers:

@@ -41,8 +41,8 @@ def parse(text: str, file: str, *, collect: bool = False) -> Tree:
     if not odd and not walk.broken and walk.data is None:
         odd.append(Problem("", 0, 0, 0, "the file holds no values", "Write key: value on its lines"))
     tree = Tree(walk.data, file, lines, (), walk.root)
-    broken = odd + [replace(problem, path=tree.dotted(path)) for problem, path in walk.broken]
-    wrong = [replace(problem, path=tree.dotted(path)) for problem, path in walk.wrong]
+    broken = odd + [replace(problem, path=tree.dotted(path, missing=True)) for problem, path in walk.broken]
+    wrong = [replace(problem, path=tree.dotted(path, missing=True)) for problem, path in walk.wrong]
     if broken or (wrong and not collect):
         raise JobError(file, lines, broken + wrong)
     return Tree(walk.data, file, lines, tuple(wrong), walk.root)
@@ -90,7 +90,7 @@ class _Walk:
         self.commas: CommaRun | None = None
 
     def read(self, *, known: set[int]) -> None:
-        """Walk to the end of the text. known: lines whose tabs are reported already; the parser's complaint adds nothing."""
+        """Walk to the end of the text. known: lines with reported tabs, where a complaint adds nothing."""
         events = iter(yaml.parse(self.text, Loader=LOADER))
         try:
             for event in events:
@@ -161,31 +161,32 @@ class _Walk:
 
     def _scalar(self, event: yaml.ScalarEvent) -> None:
         plain = not event.style
-        if plain:
-            self._watch_commas(event)
+        behind_comma = plain and self._watch_commas(event)  # `5 um` of `2,5 um`: neither a value nor a key of its own
         if self.stack and self._awaits_key():
-            self._key(event, plain)
+            self._key(event, plain, behind_comma=behind_comma)
             return
         value: Scalar = event.value
         place = self._place(event)
         if plain:
             known = plain_scalar(event.value)
-            if isinstance(known, LookAlike):
+            if isinstance(known, LookAlike) and not behind_comma:
                 self._note(self.wrong, event, place.length, known.problem, known.hint)
-            else:
+            elif not isinstance(known, LookAlike):
                 value = known
             if value is None and event.value == "" and self.stack and self.stack[-1].key_place:
                 place = self.stack[-1].key_place  # nothing is written: show the key
         self._attach(value, Node(place, place))
 
-    def _key(self, event: yaml.ScalarEvent, plain: bool) -> None:
+    def _key(self, event: yaml.ScalarEvent, plain: bool, *, behind_comma: bool) -> None:
         holder, word, place = self.stack[-1], event.value, self._place(event)
         assert isinstance(holder.data, dict) and isinstance(holder.node.inside, dict)
         if not holder.data and not holder.flow:
             if holder.node.key_place == holder.node.place:
                 holder.node.key_place = place
             holder.node.place = place
-        if plain and word == "<<":
+        if behind_comma:
+            pass
+        elif plain and word == "<<":
             self._broken(event, 2, "'<<' would merge another map into this one", "Write its entries out here")
         elif not word.strip():
             self._broken(event, 1, "a key is missing before the colon", "Write key: value")
@@ -211,7 +212,7 @@ class _Walk:
                 f"Write {_short(word.replace(':', ': ', 1))}",
             )
         holder.twice = word in holder.data
-        if holder.twice:
+        if holder.twice and not behind_comma:
             first = holder.node.inside[word].key_place.line
             where = "twice in this line" if first == place.line else f"twice, in line {first} and in line {place.line}"
             self._note(
@@ -245,15 +246,19 @@ class _Walk:
     def _awaits_key(self) -> bool:
         return isinstance(self.stack[-1].data, dict) and self.stack[-1].key is None
 
-    def _watch_commas(self, event: yaml.ScalarEvent) -> None:
-        """YAML takes the comma of `[0,5 um]` for a separator; a comma straight between two digits is never read."""
+    def _watch_commas(self, event: yaml.ScalarEvent) -> bool:
+        """YAML takes the comma of `[0,5 um]` for a separator; a comma straight between two digits is never read.
+
+        Returns whether this value stands behind such a comma.
+        """
         start, end = _start(event).index, _end(event).index
         if not (self.stack and self.stack[-1].flow and event.value):
             self.plain_end = -1
-            return
+            return False
         comma = start - 1
         text = self.text
-        if self.plain_end == comma and text[comma] == "," and text[comma - 1].isdigit() and text[start].isdigit():
+        found = self.plain_end == comma and text[comma] == "," and text[comma - 1].isdigit() and text[start].isdigit()
+        if found:
             if self.commas is None or self.commas.end != comma:
                 self._end_commas()
                 place = self._place(event)
@@ -262,6 +267,7 @@ class _Walk:
                 self.commas = CommaRun(shown, self._path_before(), self.plain_start, end)
             self.commas.end = end
         self.plain_start, self.plain_end = start, end
+        return found
 
     def _end_commas(self) -> None:
         if self.commas is not None:
@@ -298,6 +304,8 @@ class _Walk:
         for holder in self.stack:
             if isinstance(holder.data, list):
                 steps.append(len(holder.data) if holder is self.stack[-1] else len(holder.data) - 1)
+            elif holder is not self.stack[-1]:
+                steps.append(holder.last_key)
             elif holder.key is not None:
                 steps.append(holder.key)
         return tuple(steps)

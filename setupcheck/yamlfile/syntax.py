@@ -42,7 +42,6 @@ _COMPLAINTS = (
         "a bracket is not closed, or a comma is missing",
         "Write [a, b] or {key: value, key: value}",
     ),
-    ("tab character", "a tab stands in the indentation", "Indent with spaces"),
     ("while parsing a block node", "a closing bracket has no opening one", "Delete it, or put the text in quotes"),
     (
         "while parsing a block",
@@ -85,8 +84,11 @@ def odd_characters(lines: Sequence[str]) -> list[Problem]:
 
 
 def without_odd_characters(text: str) -> str:
-    """The text with those characters replaced one for one, so that the parser goes on and every place stays."""
-    return _ODD.sub("?", text) if not text.isprintable() else text
+    """The text with those characters replaced one for one, so that the parser goes on and every place stays.
+
+    Tabs become spaces: those before a line are reported, all others are harmless, and the parsers differ about them.
+    """
+    return _ODD.sub("?", text).replace("\t", " ")
 
 
 @dataclass(slots=True)
@@ -126,7 +128,8 @@ def syntax_problem(why: yaml.YAMLError, lines: Sequence[str]) -> Problem:
         ((problem, hint) for words, problem, hint in _COMPLAINTS if words in said),
         (f"this is not YAML ({said})", "Check this line and the one before"),
     )
-    if opened is not None and opened.line != mark.line and ("flow" in said or "quoted" in said or "simple key" in said):
+    unclosed = opened is not None and opened.line != mark.line and ("flow" in said or "quoted" in said)
+    if opened is not None and (unclosed or "simple key" in said):
         mark = opened  # show where it was opened, not where the parser gave up
     elif "while parsing a block" in said and "block node" not in said and lines[mark.line][: mark.column].strip():
         problem, hint = "something stands behind the value", "Put the whole value in quotes, or begin a new line"

@@ -73,7 +73,7 @@ class Tree:
                 known = isinstance(name, str | int) and not isinstance(name, bool)
                 shown += f".{name}" if known else f"[{int(step) + 1}]"
             elif missing and at == len(path) - 1:
-                shown += f".{step}"
+                shown += f"[{step + 1}]" if isinstance(step, int) else f".{step}"
         return shown.removeprefix(".")
 
     def together(self, found: Iterable[Problem]) -> tuple[Problem, ...]:

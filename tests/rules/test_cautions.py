@@ -7,7 +7,7 @@ from typing import Any
 
 import pytest
 
-from setupcheck.rulebook import FACTS, Answer, Evaluation, RuleBook, Unknown, evaluate, load_rulebook, verdict
+from setupcheck.rulebook import FACTS, Answer, Evaluation, Fact, RuleBook, Unknown, evaluate, load_rulebook, verdict
 
 from .bookshelf import QUANTITIES, load
 from .fakebook import QUANTITIES as SHIPPED_QUANTITIES
@@ -57,6 +57,13 @@ def test_a_fact_that_is_not_stated_is_no_reason_to_keep_quiet(tmp_path: Path) ->
     ]
 
 
+def test_a_certain_trigger_takes_the_place_of_a_doubtful_one_at_the_same_operation(tmp_path: Path) -> None:
+    kinds: dict[str, Fact] = {"10/centre": Unknown("setups.10.machine"), "10/square": "lathe"}
+    fake = FakeBook(QUANTITIES, HOLDS, {})
+    done = evaluate(load(tmp_path), fake, lambda at, name: kinds[at.key] if name == "setup.machine_kind" else None)
+    assert [("gloves", "")] == [(c.id, c.because) for c in done.cautions]
+
+
 def test_stop_and_check_stands_first(tmp_path: Path) -> None:
     done = run(tmp_path, {"join.heat": Has(180.0)}, {"join.by": "press", "setup.machine_kind": "lathe"})
     assert ["press-force", "gloves", "hot-part"] == ids(done)
@@ -69,6 +76,8 @@ def test_a_stop_and_check_is_open_until_somebody_signs_for_that_operation(tmp_pa
     assert "open" == verdict(done.findings, done.cautions)
     done = run(tmp_path, passing, press, Answer("press-force", 50, "KL"))
     assert ("checked by KL", "pass") == (done.cautions[0].state, verdict(done.findings, done.cautions))
+    done = run(tmp_path, passing, press, Answer("press-force", 40, "KL"))
+    assert ("to check", "open") == (done.cautions[0].state, verdict(done.findings, done.cautions))
     done = run(tmp_path, passing, press, Answer("press-force", 50, "  "))
     assert ("to check", "open") == (done.cautions[0].state, verdict(done.findings, done.cautions))
 

@@ -9,6 +9,7 @@ from typing import Any
 
 import pytest
 
+from setupcheck.errors import RuleBookError
 from setupcheck.rulebook import (
     CautionLine,
     Evaluation,
@@ -145,6 +146,14 @@ def test_braces_in_a_name_of_the_job_stay_as_they_are(tmp_path: Path) -> None:
     assert "op 10: {limit}{x} runs out 10.0 um, 20.0 um allowed" == finding.message
 
 
+@pytest.mark.parametrize(("path", "filled"), [("setups.10", "setups.10.hold.square"), ("", "hold.square")])
+def test_a_rule_that_asks_for_an_entry_names_it_at_the_instance(tmp_path: Path, path: str, filled: str) -> None:
+    rule = RULE.replace("level: fail", "level: open") + "  asks_for: .hold.square\n"
+    scope = FakeScope("hold", "10", path, 10)
+    finding = run(tmp_path, {"hold.runout": Has(0.025)}, rule=rule, scopes=[scope]).findings[0]
+    assert ("open", (filled,)) == (finding.verdict, finding.missing)
+
+
 # -- house limits
 
 
@@ -195,22 +204,21 @@ def test_a_house_limit_works_from_below_too(tmp_path: Path) -> None:
     ],
 )  # fmt: skip
 def test_a_house_file_is_held_to_the_rule_book(tmp_path: Path, change: tuple[str, str], says: str) -> None:
-    with pytest.raises(Exception) as refused:  # noqa: B017, PT011  the text below names it
+    with pytest.raises(RuleBookError) as refused:
         house(tmp_path, HOUSE.replace(*change))
-    assert "RuleBookError" == type(refused.value).__name__
     assert f"{tmp_path}/{says}" == str(refused.value)
 
 
 def test_a_rule_that_opens_nothing_to_houses_cannot_be_changed(tmp_path: Path) -> None:
     path = tmp_path / "house.yaml"
     path.write_text(HOUSE, encoding="utf-8")
-    with pytest.raises(Exception, match="HOLD-001 has no limit that a house may change"):
+    with pytest.raises(RuleBookError, match="HOLD-001 has no limit that a house may change"):
         load_house(path, load(tmp_path), quantities=QUANTITIES)
 
 
 def test_a_rule_named_twice_in_a_house_file_is_refused(tmp_path: Path) -> None:
     twice = HOUSE + HOUSE.splitlines()[2].replace("30 um", "25 um") + "\n"
-    with pytest.raises(Exception, match="HOLD-001 has two house limits"):
+    with pytest.raises(RuleBookError, match="HOLD-001 has two house limits"):
         house(tmp_path, twice)
 
 

@@ -46,8 +46,8 @@ def test_close_to_the_limit_warns_and_exactly_the_share_away_does_not() -> None:
 
 
 def test_the_share_of_two_limits_is_taken_of_the_span_between_them() -> None:
-    assert ["warn", "pass", "warn"] == [
-        judge(value, low=20.0, high=80.0, level="fail", warn_within=0.1).verdict for value in (25.0, 50.0, 75.0)
+    assert ["warn", "pass", "pass", "warn"] == [
+        judge(value, low=20.0, high=80.0, level="fail", warn_within=0.1).verdict for value in (25.0, 27.0, 73.0, 75.0)
     ]
 
 

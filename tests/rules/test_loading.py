@@ -168,7 +168,7 @@ def test_a_limit_of_a_stack_cannot_be_a_number_because_its_unit_belongs_to_the_i
 
 SPOILED_CAUTIONS = {
     "unknown severity": (("severity: caution", "severity: mild"), "there is no severity 'mild'"),
-    "unknown kind of instance": (("per: join", "per: joint"), "there is no kind of instance 'joint'. Did you mean join?"),
+    "unknown kind of instance": (("per: join", "per: joint"), "there is no kind of instance 'joint'. Did you mean"),
     "quantity alone": ((", at_least: 60 degC", ""), "a caution's quantity and at_least go together"),
     "unknown fact": (("join.by", "join.buy"), "there is no fact 'join.buy'. Did you mean join.by?"),
     "id that is no word": (("id: hot-part", "id: Hot"), "'Hot' is no caution id"),

@@ -7,16 +7,18 @@ from typing import Any
 
 import pytest
 
+from setupcheck.errors import RuleBookError
 from setupcheck.rulebook import Finding, Waiver, evaluate, verdict
 
 from .bookshelf import QUANTITIES, load
 from .fakebook import FakeBook, FakeScope, Has, Lacks, facts_from
 
 PLACE = "setups.10.hold.centre"
+TOO_MUCH = Has(0.025)
 GOOD = Waiver("HOLD-001", PLACE, "trial cut watched", "2027-03-31", "waive.0", 88)
 
 
-def run(folder: Path, *waivers: Waiver, value: Any = Has(0.025), on: str | None = "2027-03-31") -> tuple[Finding, ...]:
+def run(folder: Path, *waivers: Waiver, value: Any = TOO_MUCH, on: str | None = "2027-03-31") -> tuple[Finding, ...]:
     fake = FakeBook(QUANTITIES, [FakeScope("hold", "10/centre", PLACE, 10, 22)], {"hold.runout": value})
     return evaluate(load(folder), fake, facts_from({}), waivers=waivers, on=on).findings
 
@@ -107,5 +109,5 @@ def test_a_finding_about_a_waiver_stands_at_the_waiver(tmp_path: Path) -> None:
 
 
 def test_a_day_of_judging_that_is_no_date_is_refused(tmp_path: Path) -> None:
-    with pytest.raises(ValueError, match="year-month-day, not 'today'"):
+    with pytest.raises(RuleBookError, match=r"^--on: 'today' is not a date. Write year-month-day, as in 2027-03-31$"):
         run(tmp_path, GOOD, on="today")

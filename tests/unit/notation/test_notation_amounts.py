@@ -206,8 +206,8 @@ def test_the_unit_of_a_limit_tells_its_dimension(text, value, dimension):
         ("40..5 um", "'40..5 um' has two points. Write one point for the decimal, as in 40 um, 75\" or 25 %"),
         ("±-3", "'±-3' has a second sign. Write ±3"),
         ("tight", "'tight' is not a number. Write it as in 72"),
-        (True, "true is not an amount. Write it as in 40 um, 75\" or 25 %"),
-        ("", "an empty text is not an amount. Write 40 um, 75\" or 25 %, or leave the key away"),
+        (True, 'true is not an amount. Write it as in 40 um, 75" or 25 %'),
+        ("", 'an empty text is not an amount. Write 40 um, 75" or 25 %, or leave the key away'),
     ],
 )
 def test_a_limit_of_no_known_unit_is_refused(text, message):
@@ -219,7 +219,7 @@ def test_a_double_prime_in_an_inch_file_may_mean_inches_and_is_refused():
         amount('0.002"', "in")
     expected = "'0.002\"' may be inches or seconds of arc. Write 0.002 in, or 0.002 arcsec"
     assert expected == str(caught.value)
-    assert Amount(angle_of("3deg 20\""), "angle") == amount("3deg 20\"", "in")
+    assert Amount(angle_of('3deg 20"'), "angle") == amount('3deg 20"', "in")
 
 
 def angle_of(text):
@@ -228,8 +228,8 @@ def angle_of(text):
 
 @given(
     st.sampled_from(
-        ["temperature", "temperature_difference", "torque", "force", "pressure", "duration", "fraction", "mass", "speed",
-         "roughness", "amount", "number"]
+        ["temperature", "temperature_difference", "torque", "force", "pressure", "duration", "fraction", "mass",
+         "speed", "roughness", "amount", "number"]
     ),
     st.text(alphabet="0123456789.,+-±/ '\"°degCFKNmulbfthiRaz%\u00b2", max_size=20),
 )  # fmt: skip

@@ -24,7 +24,7 @@ ROUNDING = 1e-15  # relative; two roundings of a double
         ("3deg 34' 35.5\"", 3 + 34 / 60 + 35.5 / 3600),
         ("3deg 34.5'", 3 + 34.5 / 60),
         ("3deg 05'", 3 + 5 / 60),
-        ("3deg 35\"", 3 + 35 / 3600),
+        ('3deg 35"', 3 + 35 / 3600),
         ("3.5764 deg", 3.5764),
         ("20 deg", 20.0),
         ("20 degrees", 20.0),
@@ -58,7 +58,7 @@ ORDER = f"has degrees, minutes and seconds out of order. Write each once, {AS_IN
 @pytest.mark.parametrize(
     ("text", "message"),
     [
-        (15, "15 has no unit, so it is not an angle. Write the unit: 15 deg, or 15\" for seconds of arc"),
+        (15, '15 has no unit, so it is not an angle. Write the unit: 15 deg, or 15" for seconds of arc'),
         ("15.5", "'15.5' has no unit, so it is not an angle. Write the unit: 15.5 deg, or 15.5\" for seconds of arc"),
         ("15:30", "'15:30' may be an angle or a time of day. Write 15deg 30'"),
         ("15:30:20", "'15:30:20' may be an angle or a time of day. Write 15deg 30' 20\""),

@@ -130,8 +130,7 @@ def test_a_number_that_may_mean_two_things_is_refused(text, message):
         ("5'", "'5'' is not a length. Feet are not read: write mm or in"),
         (
             "3 tenths",
-            "'3 tenths' is not a length. "
-            "A tenth is 0.1 mm in one shop and 0.0001 in in the next: write mm, um or in",
+            "'3 tenths' is not a length. A tenth is 0.1 mm in one shop and 0.0001 in in the next: write mm, um or in",
         ),
         ("10 deg", "'10 deg' is an angle, not a length. Write a length, as in 2.5 um"),
         ("3deg 34' 35\"", "'3deg 34' 35\"' is an angle, not a length. Write a length, as in 2.5 um"),

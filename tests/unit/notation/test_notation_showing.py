@@ -84,8 +84,8 @@ def test_rounded_seconds_are_carried_into_minutes_and_degrees():
 
 @pytest.mark.parametrize(
     ("value", "digits", "expected"),
-    [(12.5, 0, "13"), (12.499999999999998, 0, "13"), (12.500000000000002, 0, "13"), (-12.5, 0, "-13"), (2.675, 2, "2.68"),
-     (0.05, 1, "0.1"), (0.04999, 1, "0.0"), (999.9999999999999, 1, "1000.0"), (0.0, 2, "0.00")],
+    [(12.5, 0, "13"), (12.499999999999998, 0, "13"), (12.500000000000002, 0, "13"), (-12.5, 0, "-13"),
+     (2.675, 2, "2.68"), (0.05, 1, "0.1"), (0.04999, 1, "0.0"), (999.9999999999999, 1, "1000.0"), (0.0, 2, "0.00")],
 )  # fmt: skip
 def test_noise_in_the_last_bits_does_not_change_what_is_shown(value, digits, expected):
     assert expected == fixed(value, digits)

@@ -122,9 +122,8 @@ def test_a_size_that_says_too_little_or_too_much_is_refused(text, message):
 def test_a_tolerance_in_millimetres_beside_a_bare_size_in_inches_is_refused():
     with pytest.raises(NotationError) as caught:
         size("1.25 ±0.005 mm", units="in")
-    assert (
-        "'1.25 ±0.005 mm' has a unit on its tolerance only. Write it on the size too: 1.25 in ±0.005 mm"
-        == str(caught.value)
+    assert "'1.25 ±0.005 mm' has a unit on its tolerance only. Write it on the size too: 1.25 in ±0.005 mm" == str(
+        caught.value
     )
 
 

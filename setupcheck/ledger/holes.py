@@ -1,0 +1,145 @@
+"""Figures of hole patterns: position, distance of neighbours, size of the circle. mm, rad."""
+
+from __future__ import annotations
+
+import math
+from dataclasses import dataclass
+from typing import TYPE_CHECKING
+
+import numpy as np
+from numpy.typing import NDArray
+
+from setupcheck.ledger import teeth
+from setupcheck.ledger.account import Account
+from setupcheck.ledger.figures import Push, Reals, merged, real_pushes, vector_pushes
+from setupcheck.ledger.route import Pattern
+
+if TYPE_CHECKING:
+    from setupcheck.ledger.combine import Draws
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class HolePosition:
+    """Position of holes: twice the largest vector from where a hole belongs [mm].
+
+    turn   account of the pattern's angle about the clocking feature [rad]; None: the pattern may be turned as a whole
+           to its mean angle (no clocking feature is asked for)
+    """
+
+    offset: Account
+    pattern: Pattern
+    turn: Account | None
+    signed: bool = False
+
+    def base(self) -> float:
+        rounding = self.pattern.rounding
+        away = max((abs(r) for r in rounding), default=0.0) * self.pattern.radius
+        return 2.0 * away + vector_pushes(self.offset, 2.0)[0] + 2.0 * abs(self.pattern.radial.known().real)
+
+    def pushes(self) -> list[Push]:
+        r = self.pattern.radius
+        division = [Push(p.cause, 0.0, 2.0 * r * p.cause.bound) for p in self.pattern.periodic]
+        division += [
+            Push(s.cause, 0.0, 2.0 * s.bound * (r if s.along == "angle" else 1.0)) for s in self.pattern.scatter
+        ]
+        division += [Push(c, 0.0, 2.0 * r * c.bound) for c in self.pattern.drift]
+        division += [Push(p.cause, 0.0, 2.0 * p.size) for p in real_pushes(self.pattern.radial)[1]]
+        if self.turn is not None:
+            division += [Push(p.cause, 0.0, 2.0 * p.size) for p in real_pushes(self.turn, r)[1]]
+        return merged(vector_pushes(self.offset, 2.0)[1], division)
+
+    def undetermined(self) -> tuple[str, ...]:
+        mine = [p.cause.missing for p in self.pattern.periodic if p.cause.law == "undetermined"]
+        mine += [s.cause.missing for s in self.pattern.scatter if s.cause.law == "undetermined"]
+        turn = self.turn.undetermined() if self.turn is not None else ()
+        return tuple(dict.fromkeys((*self.offset.undetermined(), *self.pattern.radial.undetermined(), *turn, *mine)))
+
+    def vectors(self, draws: Draws) -> NDArray[np.complex128]:
+        """Deviation of every hole in the frame of the pattern, shape (trials, count)."""
+        arcs = draws.arcs(self.pattern)
+        if self.turn is None:
+            arcs = arcs - arcs.mean(axis=1, keepdims=True)
+        else:
+            arcs = arcs + (self.pattern.radius * draws.account(self.turn).real)[:, None]
+        outward = draws.radials(self.pattern) + draws.account(self.pattern.radial).real[:, None]
+        there = np.exp(1j * teeth.angles(self.pattern))[None, :]
+        return np.asarray(draws.account(self.offset)[:, None] + (outward + 1j * arcs) * there)
+
+    def sample(self, draws: Draws) -> Reals:
+        return np.asarray(2.0 * np.abs(self.vectors(draws)).max(axis=1))
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class HoleChord:
+    """Largest error of the distance between neighbouring holes [mm]; the offset and the turn of the pattern cancel.
+
+    A tangential step d changes the chord by d cos(pi/N); a radial error of both by (r1 + r2) sin(pi/N).
+    Source: geometry, derived here.
+    """
+
+    pattern: Pattern
+    signed: bool = False
+
+    def base(self) -> float:
+        known = 2.0 * math.sin(math.pi / self.pattern.count) * abs(self.pattern.radial.known().real)
+        return known + math.cos(math.pi / self.pattern.count) * teeth.rounding_figure(self.pattern, stepwise=True)
+
+    def pushes(self) -> list[Push]:
+        n, r = self.pattern.count, self.pattern.radius
+        tangential, radial = math.cos(math.pi / n), 2.0 * math.sin(math.pi / n)
+        gain = teeth.gains(self.pattern, stepwise=True, flank=False)
+        found = [Push(p.cause, 0.0, tangential * gain.wave[p.harmonic] * p.cause.bound) for p in self.pattern.periodic]
+        for s in self.pattern.scatter:
+            reach = (
+                radial * s.bound
+                if s.along == "radial"
+                else 2.0 * tangential * s.bound * (r if s.along == "angle" else 1.0)
+            )
+            found.append(Push(s.cause, 0.0, reach))
+        found += [Push(c, 0.0, tangential * gain.drift * c.bound) for c in self.pattern.drift]
+        found += [Push(p.cause, 0.0, radial * p.size) for p in real_pushes(self.pattern.radial)[1]]
+        return merged([p for p in found if p.up > 0.0])
+
+    def undetermined(self) -> tuple[str, ...]:
+        mine = [s.cause.missing for s in self.pattern.scatter if s.cause.law == "undetermined"]
+        mine += [
+            p.cause.missing
+            for p in self.pattern.periodic
+            if p.cause.law == "undetermined" and teeth.folded(p.harmonic, self.pattern.count)
+        ]
+        return tuple(dict.fromkeys((*self.pattern.radial.undetermined(), *mine)))
+
+    def sample(self, draws: Draws) -> Reals:
+        n = self.pattern.count
+        arcs = draws.arcs(self.pattern) * self.pattern.turn
+        outward = draws.radials(self.pattern) + draws.account(self.pattern.radial).real[:, None]
+        step = np.roll(arcs, -1, axis=1) - arcs
+        both = np.roll(outward, -1, axis=1) + outward
+        return np.asarray(np.abs(step * math.cos(math.pi / n) + both * math.sin(math.pi / n)).max(axis=1))
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class PitchCircle:
+    """Error of the diameter of the circle through the holes [mm]: twice the mean radial error (least-squares circle).
+
+    Source: least-squares circle, first order, derived here.
+    """
+
+    pattern: Pattern
+    signed: bool = True
+
+    def base(self) -> float:
+        return 2.0 * real_pushes(self.pattern.radial)[0]
+
+    def pushes(self) -> list[Push]:
+        found = real_pushes(self.pattern.radial, 2.0)[1]
+        scatter = [Push(s.cause, 2.0 * s.bound, 2.0 * s.bound) for s in self.pattern.scatter if s.along == "radial"]
+        return merged(found, scatter)
+
+    def undetermined(self) -> tuple[str, ...]:
+        mine = [s.cause.missing for s in self.pattern.scatter if s.cause.law == "undetermined" and s.along == "radial"]
+        return tuple(dict.fromkeys((*self.pattern.radial.undetermined(), *mine)))
+
+    def sample(self, draws: Draws) -> Reals:
+        outward = draws.radials(self.pattern).mean(axis=1) + draws.account(self.pattern.radial).real
+        return np.asarray(2.0 * outward)

@@ -1,0 +1,130 @@
+"""What a requirement asks: its limits in base units, the unit it is shown in, its name. mm, rad."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+from setupcheck.jobfile.models import Require
+from setupcheck.physics.gear_grades import LIMITS, grade_limit
+from setupcheck.quantities.shop import Floor
+
+
+@dataclass(frozen=True, slots=True)
+class Stack:
+    """One requirement with its instance name and how it is shown.
+
+    unit   display unit (um, mm, arcsec);  kind "length" or "angle" of its limits
+    low, high  limits in base units (mm or rad), None where there is none
+    """
+
+    name: str
+    index: int
+    require: Require
+    unit: str
+    digits: int
+    low: float | None
+    high: float | None
+    of: str
+    about: str
+
+
+LENGTHS = {
+    "run-out",
+    "face-run-out",
+    "coaxial",
+    "cumulative-pitch",
+    "single-pitch",
+    "gap-centre-pitch",
+    "on-workpiece",
+    "position",
+    "chord",
+    "pitch-circle",
+    "mid-plane",
+    "backlash",
+    "backlash-swing",
+    "length",
+    "allowance",
+}
+ANGLES = {"index-range", "index-within"}
+
+
+def dimension_of(require: Require) -> str:
+    """Kind of unit a requirement's limits have: length, angle, torque or fraction."""
+    if require.what in LENGTHS or (require.what == "squareness" and require.across is not None):
+        return "length"
+    if require.what in ANGLES or require.what == "squareness":
+        return "angle"
+    return "torque" if require.what == "torque" else "fraction"
+
+
+def read_stack(floor: Floor, index: int) -> Stack:
+    """Limits, unit and name of requirement `index`.
+
+    Raises: JobError where a limit has the wrong kind of unit, or a surface of the wrong kind is asked.
+    """
+    require, path = floor.loaded.job.require[index], f"require.{index}"
+    kind = dimension_of(require)
+    limits = {"at_most": require.at_most, "at_least": require.at_least}
+    if require.between is not None:
+        limits = {"between": require.between[0], "between ": require.between[1]}
+    for key, amount in limits.items():
+        # a bare number takes the file's units for lengths, as every size does
+        if (
+            amount is not None
+            and amount.dimension != kind
+            and not (kind == "fraction" and amount.dimension == "number")
+        ):
+            raise floor.problem(
+                f"{path}.{key.strip()}",
+                f"a limit of {require.what} is a {kind}, not a {amount.dimension}",
+                f"Write it as in {_example(kind)}",
+            )
+    if require.between is not None:
+        low: float | None = require.between[0].value
+        high: float | None = require.between[1].value
+    else:
+        low = require.at_least.value if require.at_least is not None else None
+        high = require.at_most.value if require.at_most is not None else None
+    if require.grade is not None:
+        high = _grade(floor, require, path)
+    unit, digits = {"angle": ("arcsec", 1), "torque": ("N*m", 1), "fraction": ("%", 0)}.get(kind, ("um", 1))
+    if require.what in ("length", "backlash"):
+        unit, digits = "mm", 4
+    if require.what == "allowance":
+        unit, digits = "mm", 3
+    about = require.about or (floor.loaded.job.place.axis if floor.loaded.job.place is not None else None) or ""
+    of = (
+        require.of
+        or (floor.loaded.job.mesh.wheel if floor.loaded.job.mesh is not None and require.what == "mid-plane" else "")
+        or ""
+    )
+    name = require.name or ".".join(x for x in (require.what, of.replace(".", "-"), _short(about)) if x)
+    return Stack(name, index, require, unit, digits, low, high, of, about)
+
+
+def _short(text: str) -> str:
+    return text.replace(".", "-")
+
+
+def _example(kind: str) -> str:
+    return {"length": "40 um", "angle": '75"', "torque": "40 N m", "fraction": "25 %"}[kind]
+
+
+def _grade(floor: Floor, require: Require, path: str) -> float:
+    """Limit [mm] of ISO 1328-1:1995 or -2:1997 for a cylindrical gear of the stated grade."""
+    if require.what not in LIMITS:
+        raise floor.problem(
+            f"{path}.grade", f"a grade says nothing about {require.what}", f"Write it for one of: {', '.join(LIMITS)}"
+        )
+    ref = floor.loaded.ref(require.of or "")
+    node = floor.loaded.job.parts[ref.part].surfaces[ref.surface]
+    module = getattr(node, "module", None)
+    if node.kind != "teeth" or module is None:
+        raise floor.problem(
+            f"{path}.grade", "a grade needs the module of the teeth it speaks of", "Write module: 1.5 at the teeth"
+        )
+    assert require.grade is not None
+    try:
+        return grade_limit(require.what, module=module, reference_diameter=node.on_circle, grade=require.grade)
+    except ValueError as why:
+        raise floor.problem(f"{path}.grade", str(why), "Write the limit itself: at_most: 40 um") from None
