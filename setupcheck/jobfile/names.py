@@ -11,6 +11,10 @@ MACHINE_KINDS = ("lathe", "dividing-head", "rotary-table", "mill", "grinder", "d
 """A machine that needs no record of its own may be called by its kind."""
 
 
+LONGEST_OP = 6
+"""Digits of an operation number; the models allow 1 to 100,000."""
+
+
 @dataclass(frozen=True, slots=True)
 class Ref:
     """A surface of a part, perhaps as one operation left it (`wheel.rim@10`)."""
@@ -29,10 +33,10 @@ def find_surface(text: str, surfaces: Mapping[str, Sequence[str]], part: str | N
     text      `rim`, `wheel.rim`, `wheel.rim@10`
     surfaces  surface names by part;  part  the part that a bare name belongs to, if stated
     """
-    name, _, state = text.partition("@")
-    if state and not state.isdigit():
+    name, at, state = text.partition("@")
+    if at and not (state.isascii() and state.isdigit() and len(state) <= LONGEST_OP):
         return f"'{text}' names no state. Write the operation after the @, as in {name}@30"
-    op = int(state) if state else None
+    op = int(state) if at else None
     if "." in name:
         owner, _, surface = name.partition(".")
         if owner not in surfaces:
@@ -71,9 +75,53 @@ class Miss:
     key: bool = False
 
 
+@dataclass(frozen=True, slots=True)
+class Uses:
+    """What the setups of a file do with its surfaces, each as (part, surface).
+
+    cut      surfaces that some operation cuts;  removed  those that some cut takes away
+    held     (path in the file, part, surface) of each datum of a hold
+    """
+
+    cut: frozenset[tuple[str, str]]
+    removed: frozenset[tuple[str, str]]
+    held: tuple[tuple[tuple[str | int, ...], str, str], ...]
+
+
+HOLDS = ("centre", "and_centre", "square", "stop", "clock")
+
+
+def uses(data: Mapping[str, object]) -> Uses:
+    """What the setups of the raw file do with its surfaces; names that mean nothing are passed over."""
+    surfaces = surfaces_of(data)
+    cut: set[tuple[str, str]] = set()
+    removed: set[tuple[str, str]] = set()
+    held: list[tuple[tuple[str | int, ...], str, str]] = []
+    for i, node in enumerate(_list(data.get("setups"))):
+        setup = _map(node)
+        own = _name(setup.get("part"))
+        for name, entry in _map(setup.get("cut")).items():
+            if isinstance(found := find_surface(str(name), surfaces, own), Ref):
+                cut.add((found.part, found.surface))
+            for gone in _list(_map(entry).get("removes")):
+                if isinstance(found := find_surface(str(gone), surfaces, own), Ref):
+                    removed.add((found.part, found.surface))
+        for step in HOLDS:
+            name = _name(_map(_map(setup.get("hold")).get(step)).get("on"))
+            if name is not None and isinstance(found := find_surface(name, surfaces, own), Ref):
+                held.append((("setups", i, "hold", step, "on"), found.part, found.surface))
+    return Uses(frozenset(cut), frozenset(removed), tuple(held))
+
+
+def surfaces_of(data: Mapping[str, object]) -> dict[str, tuple[str, ...]]:
+    """Surface names by part, in the raw file."""
+    return {str(p): tuple(_map(_map(node).get("surfaces"))) for p, node in _map(data.get("parts")).items()}
+
+
 def misses(data: Mapping[str, object]) -> Iterator[Miss]:
     """All names in the raw file that mean nothing. Works on the tree, so it finds them even where values are wrong too."""
-    surfaces = {str(p): tuple(_map(_map(node).get("surfaces"))) for p, node in _map(data.get("parts")).items()}
+    surfaces = surfaces_of(data)
+    yield from _unnameable(data, surfaces)
     for part, node in _map(data.get("parts")).items():
         for i, relation in enumerate(_list(_map(node).get("given"))):
             for key in ("of", "about", "from"):
@@ -105,6 +153,16 @@ def misses(data: Mapping[str, object]) -> Iterator[Miss]:
     yield from _surface(_map(data.get("mesh")).get("wheel"), ("mesh", "wheel"), surfaces, None)
 
 
+def _unnameable(data: Mapping[str, object], surfaces: Mapping[str, Sequence[str]]) -> Iterator[Miss]:
+    """Names with a character that parts a name from its part or its operation."""
+    named = [("parts", part) for part in surfaces]
+    named += [("parts", part, "surfaces", name) for part in surfaces for name in surfaces[part]]
+    named += [(kind, name) for kind in ("machines", "cutters") for name in _map(data.get(kind))]
+    for path in named:
+        if any(c in path[-1] for c in ".@/") or path[-1] != path[-1].strip():
+            yield Miss(path, f"'{path[-1]}' is no name. Write it without . @ / and spaces around it", key=True)
+
+
 def _setup_misses(
     setup: Mapping[str, object],
     at: tuple[str | int, ...],
@@ -112,13 +170,12 @@ def _setup_misses(
     surfaces: Mapping[str, Sequence[str]],
     before: Sequence[int],
 ) -> Iterator[Miss]:
-    part = setup.get("part")
-    own = part if isinstance(part, str) else None
+    own = _name(setup.get("part"))
     if own is not None and own not in surfaces:
         yield Miss((*at, "part"), f"there is no part '{own}'. {_offer(own, surfaces, '')}")
         own = None
-    machine, machines = setup.get("machine"), _map(data.get("machines"))
-    if isinstance(machine, str) and machine not in machines and machine not in MACHINE_KINDS:
+    machine, machines = _name(setup.get("machine")), _map(data.get("machines"))
+    if machine is not None and machine not in machines and machine not in MACHINE_KINDS:
         yield Miss(
             (*at, "machine"), f"there is no machine '{machine}'. {_offer(machine, (*machines, *MACHINE_KINDS), '')}"
         )
@@ -127,7 +184,7 @@ def _setup_misses(
         yield Miss(
             (*at, "keeps"), f"no operation {keeps} comes before this one. Write the op whose holding was never opened"
         )
-    for hold in ("centre", "and_centre", "square", "stop", "clock"):
+    for hold in HOLDS:
         entry = _map(_map(setup.get("hold")).get(hold))
         yield from _surface(entry.get("on"), (*at, "hold", hold, "on"), surfaces, own)
     cutters = _map(data.get("cutters"))
@@ -135,8 +192,8 @@ def _setup_misses(
         found = find_surface(str(name), surfaces, own)
         if isinstance(found, str):
             yield Miss((*at, "cut", name), found, key=True)
-        cutter = _map(cut).get("cutter")
-        if isinstance(cutter, str) and cutter not in cutters:
+        cutter = _name(_map(cut).get("cutter"))
+        if cutter is not None and cutter not in cutters:
             yield Miss((*at, "cut", name, "cutter"), f"there is no cutter '{cutter}'. {_offer(cutter, cutters, '')}")
         for i, gone in enumerate(_list(_map(cut).get("removes"))):
             yield from _surface(gone, (*at, "cut", name, "removes", i), surfaces, own)
@@ -154,14 +211,22 @@ def _setup_misses(
 def _surface(
     text: object, path: tuple[str | int, ...], surfaces: Mapping[str, Sequence[str]], part: str | None
 ) -> Iterator[Miss]:
-    if isinstance(text, str):
-        found = find_surface(text, surfaces, part)
+    name = _name(text)
+    if name is not None:
+        found = find_surface(name, surfaces, part)
         if isinstance(found, str):
             yield Miss(path, found)
 
 
 def _is_join(data: Mapping[str, object], of: object) -> bool:
     return any(str(_map(s).get("op")) == str(of) and _map(s).get("join") for s in _list(data.get("setups")))
+
+
+def _name(node: object) -> str | None:
+    """The name that an entry stands for; the models take a bare number for a name too."""
+    if isinstance(node, str) or (isinstance(node, int | float) and not isinstance(node, bool)):
+        return str(node)
+    return None
 
 
 def _map(node: object) -> Mapping[str, object]:

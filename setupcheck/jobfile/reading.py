@@ -34,18 +34,26 @@ class LoadedJob:
     sha256: str
 
     def loc(self, path: str) -> Loc:
-        """The way through the tree of a shop path: `setups.30.hold.centre` counts setups by their operation number."""
-        steps = path.split(".") if path else []
-        found: list[str | int] = []
-        for step in steps:
-            if found == ["setups"] and step.isdigit():
-                found.append(next((i for i, s in enumerate(self.job.setups) if s.op == int(step)), 10**9))
-            elif (step.isdigit() and found and found[0] in ("require", "waive", "parts")) or (
-                step.isdigit() and len(found) > 2
-            ):
-                found.append(int(step))
-            else:
-                found.append(step)
+        """The way through the tree of a shop path: `setups.30.hold.centre` counts setups by their operation number.
+
+        A key that holds points itself, as in `setups.30.cut.wheel.teeth.error`, is found as one step.
+        """
+        steps, found, node = path.split(".") if path else [], list[str | int](), self.tree.data
+        while steps:
+            step: str | int = steps[0]
+            used = 1
+            if isinstance(node, dict):
+                joined = (n for n in range(len(steps), 1, -1) if ".".join(steps[:n]) in node)
+                used = 1 if step in node else next(joined, 1)
+                step = ".".join(steps[:used])
+                node = node.get(step)
+            elif isinstance(node, list) and steps[0].isdecimal():
+                number = int(steps[0])
+                if found == ["setups"]:
+                    number = next((i for i, s in enumerate(self.job.setups) if s.op == number), len(node))
+                step, node = number, node[number] if number < len(node) else None
+            found.append(step)
+            del steps[:used]
         return tuple(found)
 
     def line(self, path: str) -> int:
@@ -84,12 +92,33 @@ def read_job_text(text: str, file: str) -> LoadedJob:
         job = Job.model_validate(tree.data, context={"units": tree.data.get("units")})
     except ValidationError as wrong:
         problems += [_problem(error, tree) for error in wrong.errors(include_url=False)]
-    for miss in names.misses(tree.data):
+    for miss in (*names.misses(tree.data), *_contradictions(tree.data, job)):
         place = tree.key_place(miss.path) if miss.key else tree.place(miss.path)
         problems.append(_at(place, tree.dotted(miss.path), miss.message))
     if problems or tree.problems or job is None:
         raise JobError(file, tree.lines, tree.together(problems))
     return LoadedJob(job, tree, Path(file).name, hashlib.sha256(text.encode()).hexdigest())
+
+
+def _contradictions(data: dict[str, Data], job: Job | None) -> Iterator[names.Miss]:
+    """What valid entries say against each other. Where the file has errors, the surfaces and requirements that can be
+    read are compared all the same, so that one run tells everything."""
+    units = data.get("units")
+    parts: dict[str, dict[str, Surface]]
+    if job is not None:
+        parts = {name: part.surfaces for name, part in job.parts.items()}
+        asked = dict(enumerate(job.require))
+    else:
+        parts = {
+            name: dict(_readable(SURFACE, _entries(_inside(part, "surfaces")), units))
+            for name, part in _entries(data.get("parts"))
+        }
+        asked = dict(_readable(REQUIRE, _entries(data.get("require")), units))
+    return sense.contradictions(parts, asked, names.uses(data), units="in" if units == "in" else "mm")
+
+
+SURFACE: TypeAdapter[Surface] = TypeAdapter(Surface)
+REQUIRE: TypeAdapter[Require] = TypeAdapter(Require)
 
 
 def _at(place: Place, path: str, message: str) -> Problem:

@@ -10,7 +10,7 @@ from setupcheck.jobfile.models import Deviation, Dimension
 from setupcheck.ledger.account import Account, face_reading_to_lean, fim_to_eccentricity
 from setupcheck.ledger.causes import Cause, Law
 from setupcheck.ledger.route import part_vector
-from setupcheck.notation import NotationError, angle
+from setupcheck.notation import NotationError, angle, show
 from setupcheck.quantities.typical import typical
 
 
@@ -93,9 +93,9 @@ def vector_error(given: Deviation | None, entry: Entry, *, scale: float, towards
         )
     if given.device and given.mark == "kept":
         # only equal statements are one cause: a second reading of the same device is another piece of knowledge
-        shared = replace(
-            cause, key=f"{given.device}, mark kept: {entry.what.replace('_', ' ')} {cause.high * 1000:.9g} um"
-        )
+        size = given.measured if given.measured is not None else given.at_most if given.at_most is not None else 0.0
+        said = f"{entry.what.replace('_', ' ').replace('runout', 'run-out')} {show(size, 'um', 3).replace('.000', '')}"
+        shared = replace(cause, key=f"{given.device}, mark kept: {said}")
         return turned.to_part(Account.of(shared))
     return Account.of(cause)
 

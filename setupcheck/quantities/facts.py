@@ -91,9 +91,9 @@ def facts_of(floor: Floor, scope: Scope, name: str) -> Fact:
     if name == "join.by":
         return setup.join.by
     if name == "heat.by":
-        if setup.join.by != "shrink":
-            return None
         heat = setup.join.heat
+        if heat is None and setup.join.by != "shrink":
+            return None
         return heat.by if heat is not None and heat.by is not None else UnknownFact(f"{path}.join.heat.by")
     return None
 
@@ -171,4 +171,8 @@ def _cut_fact(floor: Floor, scope: Scope, setup: Setup | None, name: str) -> Fac
     if name == "cut.kind":
         ref = floor.loaded.ref(scope.node.name, setup.part)
         return floor.loaded.job.parts[ref.part].surfaces[ref.surface].kind
-    return floor.loaded.job.cutters[cut.cutter].kind if cut.cutter is not None else None
+    if cut.cutter is not None:
+        return floor.loaded.job.cutters[cut.cutter].kind
+    _, machine = machine_of(floor.loaded, setup)
+    turns_a_cutter = machine is not None and machine.kind in ("dividing-head", "rotary-table", "mill", "jig-borer")
+    return UnknownFact(f"setups.{setup.op}.cut.{scope.node.name}.cutter") if turns_a_cutter else None

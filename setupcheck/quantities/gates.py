@@ -14,6 +14,9 @@ from setupcheck.quantities.book import Scope
 from setupcheck.quantities.judged import Result
 from setupcheck.quantities.scopes import HoldEntry
 
+LEAST_KEPT = 0.2
+"""Share of a bound that better work leaves when one change is not enough. Source: our screening choice."""
+
 STEP = 0.001
 """Gates are rounded down to whole micrometres [mm]. Source: our screening choice."""
 
@@ -135,9 +138,9 @@ def remedy(loaded: LoadedJob, result: Result) -> list[Change]:
         if found is None or share.worst <= 0.0:
             continue
         now, unit = found
-        keep = max(0.0, 1.0 - over / share.worst)
-        if keep < 0.2:  # a fifth of a bound is what care can buy; our screening choice
-            keep = 0.2
+        keep = 1.0 - over / share.worst
+        if keep <= LEAST_KEPT:  # this one alone will not do: cut it back as far as care goes, and look at the next
+            keep = LEAST_KEPT if over > share.worst else max(keep, 0.0)
         changes.append(Change(share.cause, path, now, now * keep, unit))
         over -= share.worst * (1.0 - keep)
         if over <= 1e-12:

@@ -56,9 +56,14 @@ def planned(entry: HoldEntry) -> float | None:
     return entry.error.at_most if entry.error is not None else None
 
 
-def measured_u(entry: HoldEntry) -> float | None:
-    """Standard uncertainty of the measured error. Source: the job file; an expanded one is halved (k = 2)."""
-    return entry.error.u if entry.error is not None else None
+def measured_u(entry: HoldEntry, path: str) -> float | Open | None:
+    """Standard uncertainty of the measured error; Open where none is stated. Source: the job file; an expanded one is halved."""
+    given = entry.error
+    if given is None or given.measured is None:
+        return None
+    if given.uncertainty is None and given.standard_uncertainty is None:
+        return Open((f"{path}.{entry.key}.uncertainty",))
+    return given.u
 
 
 def clearance_share(entry: HoldEntry, path: str, results: tuple[Result, ...]) -> float | None:
@@ -148,13 +153,15 @@ def left_over(floor: Floor, setup: Setup) -> float | Open | None:
 def folded_harmonic(floor: Floor, setup: Setup) -> float | None:
     """min(N mod z, z - N mod z): waves round the work left by an error that comes once per crank turn.
 
-    None where the head has no such error stated.  Source: aliasing, derived here; N = 40, z = 39 or 41 gives 1.
+    None where the head has no such error stated, or where it comes alike at every tooth (0 waves).
+    Source: aliasing, derived here; N = 40, z = 39 or 41 gives 1.
     """
     found = _divided(floor, setup)
     worm = setup.divide.worm if setup.divide is not None else None
     if found is None or worm is None or not worm.once_per_crank or found[2] is None:
         return None
-    return float(folded(found[2], found[1]))
+    waves = folded(found[2], found[1])
+    return float(waves) if waves else None
 
 
 def step_error(floor: Floor, setup: Setup) -> float | None:

@@ -141,7 +141,7 @@ HOLD = (
         "um",
         2,
         holds.measured_u,
-        {"entry": ":"},
+        {"entry": ":", "path": "@path"},
         "standard uncertainty of the measured error",
     ),
     Quantity(

@@ -205,12 +205,15 @@ def _requirement(found: Review, scope: Scope, everything: bool, tightest: bool) 
     causes = _share(found, result, 1000 if everything else CAUSES_SHOWN)
     if causes:
         line += f"; biggest: {causes[0]}"
+    elif not result.combined.base:
+        line += "; cut in one holding, so nothing adds"
     if tightest:
         line += " (the tightest)"
     yield from wrap(line, first="  ", rest="      ")
     if len(causes) > 1:
         yield from wrap("then " + ", ".join(causes[1:]), first="      ", rest="      ")
-    yield from wrap(_statistics(result, unit, digits, found.loaded.job.confidence), first="      ", rest="      ")
+    if causes:
+        yield from wrap(_statistics(result, unit, digits, found.loaded.job.confidence), first="      ", rest="      ")
 
 
 def _statistics(result: Result, unit: str, digits: int, confidence: float) -> str:
@@ -241,7 +244,7 @@ def _gates(found: Review) -> Iterator[str]:
 
 def _gate(gate: Gate, *, inches: bool) -> Iterator[str]:
     unit, digits = ("thou", 1) if inches else ("um", 0)
-    dial = "face run-out" if gate.step == "square" else "run-out"
+    dial = {"square": "face run-out", "and_centre": "run-out, second plane,"}.get(gate.step, "run-out")
     assert gate.reading is not None
     planned = show(gate.planned, unit, digits)
     if gate.reading <= 0.0:

@@ -44,7 +44,8 @@ def cause_in_words(key: str) -> str:
     """`op 40, hub in spigot: clearance` as a phrase: `clearance of hub in spigot (op 40)`."""
     place, colon, what = key.rpartition(": ")
     if not colon:
-        return key
+        op, comma, rest = key.partition(", ")
+        return f"{rest} ({op})" if comma and op.startswith("op ") else key
     op, comma, rest = place.partition(", ")
     if comma and op.startswith("op "):
         return f"{what} of {rest} ({op})"

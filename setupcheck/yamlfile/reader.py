@@ -123,6 +123,8 @@ class _Walk:
                 f"'{word}' points to another place of the file",
                 "Write the value out here, or put a text in quotes",
             )
+            if self.stack and self._awaits_key():
+                raise _TooMuch
             self._attach(None, Node(self._place(event), self._place(event)))
         elif isinstance(event, yaml.DocumentStartEvent):
             self.documents += 1
@@ -293,8 +295,9 @@ class _Walk:
         return found[0] if found else self.text[_start(event).index : _start(event).index + 1]
 
     def _place(self, event: yaml.Event, length: int | None = None) -> Place:
-        start, end = _start(event), _end(event)
+        start = _start(event)
         if length is None:
+            end = _end(event)
             here = end.column if end.line == start.line else len(self.lines[start.line])
             length = max(1, here - start.column)
         return Place(start.line + 1, start.column + 1, length)

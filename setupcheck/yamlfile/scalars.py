@@ -47,7 +47,7 @@ def plain_scalar(text: str) -> Scalar | LookAlike:
     first = text[0]
     if not (first.isascii() and (first.isdigit() or first in "+-.nNiI")):
         return text
-    if _NOT_FINITE.fullmatch(text):
+    if not first.isdigit() and _NOT_FINITE.fullmatch(text):
         return LookAlike(f"'{text}' is not a number", "Write a finite number, or leave the key away if it is not known")
     found = _NUMBER.fullmatch(text)
     if not found:
@@ -88,11 +88,11 @@ def yaml11_surprise(text: str) -> str | None:
 def _other_spelling(text: str) -> str | LookAlike:
     if len(text) > 2 * MOST_DIGITS:
         return text
-    if _GROUPED.fullmatch(text):
+    if "_" in text and _GROUPED.fullmatch(text):
         return LookAlike(
             f"'{text}' has an underscore in its number", f"Write {text.replace('_', '')}, or use quotes if it is text"
         )
-    if found := _OTHER_BASE.fullmatch(text):
+    if text.lstrip("+-").startswith("0") and (found := _OTHER_BASE.fullmatch(text)):
         base = {"x": 16, "o": 8, "b": 2}[found[1].lower()]
         try:
             value = int(found[2], base)
