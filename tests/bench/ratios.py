@@ -1,0 +1,109 @@
+"""Ratios of this command against what it cannot do without, measured side by side in one run. Not a test.
+
+    python tests/bench/ratios.py
+
+Prints each ratio with its aim. Whole processes are timed alternately and the medians compared, so that a busy machine
+slows both sides alike.
+"""
+
+from __future__ import annotations
+
+import statistics
+import subprocess
+import sys
+import time
+from collections.abc import Callable
+from pathlib import Path
+
+ROOT = Path(__file__).resolve().parents[2]
+JOB = ROOT / "jobs" / "rotator-worm-wheel.yaml"
+FIVE = "import numpy, pydantic, yaml, rich.console, typer"
+RUNS = 15
+
+
+def process(*arguments: str) -> Callable[[], float]:
+    """Wall time of one whole process."""
+
+    def run() -> float:
+        start = time.perf_counter()
+        subprocess.run([sys.executable, *arguments], cwd=ROOT, stdout=subprocess.DEVNULL, check=False)
+        return time.perf_counter() - start
+
+    return run
+
+
+def timed(work: Callable[[], object]) -> Callable[[], float]:
+    """Wall time of one call."""
+
+    def run() -> float:
+        start = time.perf_counter()
+        work()
+        return time.perf_counter() - start
+
+    return run
+
+
+def ratio(name: str, ours: Callable[[], float], theirs: Callable[[], float], aim: str, runs: int = RUNS) -> None:
+    """Median of ours over median of theirs, taken alternately."""
+    ours(), theirs()
+    pairs = [(ours(), theirs()) for _ in range(runs)]
+    a, b = (statistics.median(times) for times in zip(*pairs, strict=True))
+    print(f"{name:<58} {a * 1000:8.1f} / {b * 1000:8.1f} ms = {a / b:5.2f}   aim {aim}")
+
+
+def random_numbers() -> None:
+    """Only the random numbers that the review of the worm wheel draws, in numpy, nothing made of them."""
+    import numpy as np
+
+    from setupcheck.flow import load_job, prepare, stack_results
+    from setupcheck.ledger.combine import TRIALS, Draws
+
+    loaded = load_job(JOB)
+
+    def fresh() -> tuple[object, set[object]]:
+        _, book = prepare(loaded)
+        results = stack_results(book)
+        causes = {s.cause for r in results.values() for s in r.combined.shares}
+        return book, causes
+
+    _, causes = fresh()
+    figures = [r.figure for r in stack_results(prepare(loaded)[1]).values()]
+    patterns = {id(p): p for f in figures if (p := getattr(f, "pattern", None)) is not None}
+    scatters = {s.cause.key: (s, p.count) for p in patterns.values() for s in p.scatter}
+
+    def draw() -> None:
+        for cause in causes:
+            if cause.law != "high-point" and cause.key not in scatters:  # type: ignore[attr-defined]
+                rng = Draws.stream(cause.key)  # type: ignore[attr-defined]
+                for _ in range(1 if cause.is_real else 3 if cause.law.startswith("clearance") else 2):  # type: ignore[attr-defined]
+                    rng.random(TRIALS)
+        for scatter, count in scatters.values():
+            Draws.stream(scatter.cause.key).random((TRIALS, count), dtype=np.float32)
+
+    def carlo() -> None:
+        from setupcheck.ledger.combine import combine
+
+        draws = Draws()
+        for figure in figures:
+            combine(figure, draws, low=None, high=1.0, confidence=0.95)
+
+    ratio("Monte Carlo of all stacks / drawing its random numbers", timed(carlo), timed(draw), "under 2")
+
+
+def many_jobs() -> None:
+    """200 jobs in one call against 200 times one, per job."""
+    from setupcheck.flow import review
+
+    one = timed(lambda: review(JOB))
+    many = timed(lambda: [review(JOB) for _ in range(200)])
+    one()
+    single = statistics.median(one() for _ in range(20))
+    print(f"{'200 jobs in one call / 200 x one job':<58} {many() * 1000:8.1f} / {single * 200 * 1000:8.1f} ms", end="")
+    print(f" = {many() / (single * 200):5.2f}   aim about 1")
+
+
+if __name__ == "__main__":
+    ratio("setupcheck --help / import typer", process("-m", "setupcheck", "--help"), process("-c", "import typer"), "under 1.3")
+    ratio("setupcheck review / the five imports", process("-m", "setupcheck", "review", str(JOB)), process("-c", FIVE), "under 2")
+    random_numbers()
+    many_jobs()
