@@ -2,12 +2,19 @@
 
 from __future__ import annotations
 
+import gc
+import os
 import sys
 
-import typer
+# One thread is enough for the small matrices here, and starting more would cost more than the whole review.
+os.environ.setdefault("OPENBLAS_NUM_THREADS", "1")
+# A command lives for a fraction of a second: looking for cycles while everything is being imported only delays it.
+gc.set_threshold(200_000)
 
-from setupcheck.cli import review, rules, working
-from setupcheck.errors import SetupcheckError
+import typer  # noqa: E402
+
+from setupcheck.cli import review, rules, working  # noqa: E402
+from setupcheck.errors import SetupcheckError  # noqa: E402
 
 app = typer.Typer(
     name="setupcheck",

@@ -16,6 +16,6 @@ def command(
     Example: setupcheck rules DATUM-001
     """
     from setupcheck.flow import rules
-    from setupcheck.rulebook import describe
+    from setupcheck.rulebook.describe import describe
 
     sys.stdout.write(describe(rules(), rule).rstrip() + "\n")

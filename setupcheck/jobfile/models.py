@@ -7,7 +7,16 @@ from __future__ import annotations
 
 from typing import Annotated, Literal
 
-from pydantic import BaseModel, BeforeValidator, ConfigDict, Field, ValidationInfo, WithJsonSchema, model_validator
+from pydantic import (
+    AfterValidator,
+    BaseModel,
+    BeforeValidator,
+    ConfigDict,
+    Field,
+    ValidationInfo,
+    WithJsonSchema,
+    model_validator,
+)
 
 from setupcheck import notation
 from setupcheck.jobfile.types import (
@@ -20,13 +29,15 @@ from setupcheck.jobfile.types import (
     Reading,
     Size,
     Speed,
+    in_file_units,
+    units_of,
 )
 
 
 class Shop(BaseModel):
     """A record of the job file."""
 
-    model_config = ConfigDict(extra="forbid", frozen=True, coerce_numbers_to_str=True)
+    model_config = ConfigDict(extra="forbid", frozen=True, coerce_numbers_to_str=True, defer_build=True)
 
 
 class Dimension(Shop):
@@ -46,9 +57,11 @@ class Dimension(Shop):
     @model_validator(mode="before")
     @classmethod
     def a_plain_value_is_a_size_with_limits(cls, given: object, info: ValidationInfo) -> object:
-        if isinstance(given, str | int | float) and not isinstance(given, bool):
-            units = (info.context or {}).get("units", "mm")
-            read = notation.size(given, units=units)
+        if given is None or isinstance(given, bool | list):
+            said = "nothing is written here" if given is None else f"{notation.quoted(given)} is not a size"
+            raise ValueError(f"{said}. Write a size, as in 32 H6 or 32.041 ±0.003")
+        if isinstance(given, str | int | float):
+            read = notation.size(given, units=units_of(info))
             shown = {"nominal": read.nominal, "lower": read.lower, "upper": read.upper}
             return {
                 **{k: f"{v!r} mm" for k, v in shown.items() if v is not None},
@@ -62,6 +75,8 @@ class Dimension(Shop):
             raise ValueError(
                 "this size has neither a nominal nor a measured value. Write a size, or measured: 32.04 mm"
             )
+        if self.lower is not None and self.upper is not None and self.lower > self.upper:
+            raise ValueError("the lower deviation is above the upper one. Write lower: -0.1 mm and upper: 0.1 mm")
         return self
 
     @property
@@ -71,12 +86,6 @@ class Dimension(Shop):
             return self.measured
         assert self.nominal is not None
         return self.nominal
-
-
-def _positive(given: Dimension) -> Dimension:
-    if given.value <= 0.0:
-        raise ValueError(f"{given.value:g} mm is not a diameter. Write a size above zero")
-    return given
 
 
 class Deviation(Shop):
@@ -100,7 +109,9 @@ class Deviation(Shop):
     @model_validator(mode="before")
     @classmethod
     def a_plain_value_is_a_bound(cls, given: object) -> object:
-        return {"at_most": given} if isinstance(given, str | int | float) and not isinstance(given, bool) else given
+        if isinstance(given, bool | list):
+            raise ValueError(f"{notation.quoted(given)} is not an error entry. Write a bound with its unit: 10 um")
+        return {"at_most": given} if isinstance(given, str | int | float) else given
 
     @model_validator(mode="after")
     def one_uncertainty(self) -> Deviation:
@@ -109,12 +120,6 @@ class Deviation(Shop):
         if self.measured is None and self.at_most is None and self.device is None:
             raise ValueError("this error states nothing. Write at_most: 10 um, or measured: 6 um, or a device")
         return self
-
-    @staticmethod
-    def never_negative(given: Deviation | None) -> None:
-        """A dial reading has no sign; a length error has one."""
-        if given is not None and given.measured is not None and given.measured < 0.0:
-            raise ValueError("a run-out reading is never negative. Write the full indicator movement")
 
     @property
     def u(self) -> float:
@@ -126,15 +131,40 @@ class Deviation(Shop):
 
 _DEVIATION_SCHEMA = {"anyOf": [{"type": "string"}, {"$ref": "#/$defs/Deviation"}]}
 _SIZE_SCHEMA = {"anyOf": [{"type": ["string", "number"]}, {"$ref": "#/$defs/Dimension"}]}
+
+
+def _above_zero(given: Dimension, info: ValidationInfo) -> Dimension:
+    if given.value <= 0.0:
+        raise ValueError(f"{in_file_units(given.value, info)} is not a diameter. Write a size above zero")
+    return given
+
+
+def _without_sign(given: Deviation) -> Deviation:
+    if given.measured is not None and given.measured < 0.0:
+        raise ValueError("a run-out reading is never negative. Write the full indicator movement")
+    return given
+
+
 Error = Annotated[Deviation, WithJsonSchema(_DEVIATION_SCHEMA)]
+RunOut = Annotated[Deviation, AfterValidator(_without_sign), WithJsonSchema(_DEVIATION_SCHEMA)]
+"""A dial reading has no sign; a length error has one."""
 Dim = Annotated[Dimension, WithJsonSchema(_SIZE_SCHEMA)]
+Diameter = Annotated[Dimension, AfterValidator(_above_zero), WithJsonSchema(_SIZE_SCHEMA)]
 
 
 # -- surfaces of a part ----------------------------------------------------------------------------------------------
 
+
+def _end(given: object) -> int:
+    way = {"+z": 1, "-z": -1}.get(given) if isinstance(given, str) else None
+    if way is None:
+        raise ValueError(f"{notation.quoted(given)} is no end of the part. Write +z or -z")
+    return way
+
+
 Facing = Annotated[
     Literal[1, -1],
-    BeforeValidator(lambda g: {"+z": 1, "-z": -1}.get(g, g) if isinstance(g, str) else g),
+    BeforeValidator(_end),
     WithJsonSchema({"enum": ["+z", "-z"]}),
 ]
 
@@ -143,7 +173,7 @@ class Round(Shop):
     """A surface of revolution with a length: cylinder, bore, taper, thread."""
 
     kind: Literal["cylinder", "bore", "taper", "thread"]
-    diameter: Dim
+    diameter: Diameter
     low: Length = Field(alias="from")
     high: Length = Field(alias="to")
     hole: Size | None = None
@@ -152,14 +182,13 @@ class Round(Shop):
     pitch: Size | None = None
 
     @model_validator(mode="after")
-    def it_has_a_length(self) -> Round:
-        _positive(self.diameter)
+    def it_has_a_length(self, info: ValidationInfo) -> Round:
+        low, high = in_file_units(self.low, info), in_file_units(self.high, info)
         if self.high <= self.low:
-            raise ValueError(f"it runs from {self.low:g} to {self.high:g} mm. Write from: below to:")
+            raise ValueError(f"it runs from {low} to {high}. Write from: below to:")
         if self.hole is not None and self.hole >= self.diameter.value:
-            raise ValueError(
-                f"a hole of {self.hole:g} mm leaves nothing of {self.diameter.value:g} mm. Write a smaller hole"
-            )
+            hole, size = in_file_units(self.hole, info), in_file_units(self.diameter.value, info)
+            raise ValueError(f"a hole of {hole} leaves nothing of {size}. Write a smaller hole")
         return self
 
 
@@ -220,8 +249,8 @@ class Relation(Shop):
     of: str
     about: str | None = None
     from_: str | None = Field(default=None, alias="from")
-    runout: Error | None = None
-    face_runout: Error | None = None
+    runout: RunOut | None = None
+    face_runout: RunOut | None = None
     across: Size | None = None
     length: Dim | None = None
 
@@ -235,8 +264,6 @@ class Relation(Shop):
             raise ValueError("a relation `about` an axis needs runout or face_runout. Write runout: 3 um")
         if self.face_runout is not None and self.across is None:
             raise ValueError("face_runout needs the circle it was read on. Write across: 56")
-        Deviation.never_negative(self.runout)
-        Deviation.never_negative(self.face_runout)
         return self
 
 
@@ -261,7 +288,7 @@ class Worm(Shop):
     profile: Literal["ZA", "ZN", "ZI", "ZK", "ZC"] | None = None
     thread_thickness: Dim | None = None
     end_float: Bound | None = None
-    runout: Error | None = None
+    runout: RunOut | None = None
     speed: Speed | None = None
 
 
@@ -289,7 +316,7 @@ class Machine(Shop):
     worm_ratio: int | None = Field(default=None, ge=1, le=1000)
     nose_points: Literal["left", "right", "up", "front", "back"] | None = None
     cutter_stands: Literal["front", "back", "above", "left", "right"] | None = None
-    axis_runout: Error | None = None
+    axis_runout: RunOut | None = None
     axis: Literal["horizontal", "vertical"] | None = None
     hole_circles: tuple[int, ...] = ()
 

@@ -5,7 +5,7 @@ from __future__ import annotations
 from collections.abc import Iterator, Mapping, Sequence
 from dataclasses import dataclass
 
-from setupcheck.notation import nearest
+from setupcheck.notation import nearest, quoted
 
 MACHINE_KINDS = ("lathe", "dividing-head", "rotary-table", "mill", "grinder", "drill-press", "jig-borer", "press")
 """A machine that needs no record of its own may be called by its kind."""
@@ -35,14 +35,14 @@ def find_surface(text: str, surfaces: Mapping[str, Sequence[str]], part: str | N
     """
     name, at, state = text.partition("@")
     if at and not (state.isascii() and state.isdigit() and len(state) <= LONGEST_OP):
-        return f"'{text}' names no state. Write the operation after the @, as in {name}@30"
+        return f"{quoted(text)} names no state. Write the operation after the @, as in {name}@30"
     op = int(state) if at else None
     if "." in name:
         owner, _, surface = name.partition(".")
         if owner not in surfaces:
-            return f"there is no part '{owner}'. {_offer(owner, surfaces, '')}"
+            return f"there is no part {quoted(owner)}. {_offer(owner, surfaces, '')}"
         if surface not in surfaces[owner]:
-            return f"part '{owner}' has no surface '{surface}'. {_offer(surface, surfaces[owner], owner + '.')}"
+            return f"part {quoted(owner)} has no surface {quoted(surface)}. {_offer(surface, surfaces[owner], owner + '.')}"
         return Ref(owner, surface, op)
     owners = [p for p in surfaces if name in surfaces[p] and (part is None or p == part)]
     if len(owners) == 1:
@@ -53,9 +53,9 @@ def find_surface(text: str, surfaces: Mapping[str, Sequence[str]], part: str | N
             if part is not None
             else tuple(dict.fromkeys(s for p in surfaces for s in surfaces[p]))
         )
-        return f"no surface is called '{name}'. {_offer(name, inside, '')}"
+        return f"no surface is called {quoted(name)}. {_offer(name, inside, '')}"
     both = " or ".join(f"{p}.{name}" for p in owners)
-    return f"'{name}' is a surface of {len(owners)} parts. Write {both}"
+    return f"{quoted(name)} is a surface of {len(owners)} parts. Write {both}"
 
 
 def _offer(word: str, choices: Sequence[str] | Mapping[str, object], prefix: str) -> str:
@@ -107,8 +107,8 @@ def uses(data: Mapping[str, object]) -> Uses:
                 if isinstance(found := find_surface(str(gone), surfaces, own), Ref):
                     removed.add((found.part, found.surface))
         for step in HOLDS:
-            name = _name(_map(_map(setup.get("hold")).get(step)).get("on"))
-            if name is not None and isinstance(found := find_surface(name, surfaces, own), Ref):
+            on = _name(_map(_map(setup.get("hold")).get(step)).get("on"))
+            if on is not None and isinstance(found := find_surface(on, surfaces, own), Ref):
                 held.append((("setups", i, "hold", step, "on"), found.part, found.surface))
     return Uses(frozenset(cut), frozenset(removed), tuple(held))
 
@@ -133,7 +133,7 @@ def misses(data: Mapping[str, object]) -> Iterator[Miss]:
         if isinstance(op, int) and not isinstance(op, bool):
             if op in seen:
                 yield Miss(("setups", i, "op"), f"operation {op} is there twice. Write the next free number")
-            elif seen and op < max(seen):
+            elif seen and 1 <= op < max(seen):
                 yield Miss(
                     ("setups", i, "op"),
                     f"operation {op} stands after {max(seen)}. Write the setups in the order they are done",
@@ -155,12 +155,13 @@ def misses(data: Mapping[str, object]) -> Iterator[Miss]:
 
 def _unnameable(data: Mapping[str, object], surfaces: Mapping[str, Sequence[str]]) -> Iterator[Miss]:
     """Names with a character that parts a name from its part or its operation."""
-    named = [("parts", part) for part in surfaces]
+    named: list[tuple[str, ...]] = [("parts", part) for part in surfaces]
     named += [("parts", part, "surfaces", name) for part in surfaces for name in surfaces[part]]
     named += [(kind, name) for kind in ("machines", "cutters") for name in _map(data.get(kind))]
     for path in named:
-        if any(c in path[-1] for c in ".@/") or path[-1] != path[-1].strip():
-            yield Miss(path, f"'{path[-1]}' is no name. Write it without . @ / and spaces around it", key=True)
+        name = path[-1]
+        if any(c in name for c in ".@/") or name != name.strip() or not name.isprintable():
+            yield Miss(path, f"{quoted(name)} is no name. Write it without . @ / and spaces around it", key=True)
 
 
 def _setup_misses(
@@ -172,12 +173,13 @@ def _setup_misses(
 ) -> Iterator[Miss]:
     own = _name(setup.get("part"))
     if own is not None and own not in surfaces:
-        yield Miss((*at, "part"), f"there is no part '{own}'. {_offer(own, surfaces, '')}")
+        yield Miss((*at, "part"), f"there is no part {quoted(own)}. {_offer(own, surfaces, '')}")
         own = None
     machine, machines = _name(setup.get("machine")), _map(data.get("machines"))
     if machine is not None and machine not in machines and machine not in MACHINE_KINDS:
         yield Miss(
-            (*at, "machine"), f"there is no machine '{machine}'. {_offer(machine, (*machines, *MACHINE_KINDS), '')}"
+            (*at, "machine"),
+            f"there is no machine {quoted(machine)}. {_offer(machine, (*machines, *MACHINE_KINDS), '')}",
         )
     keeps = setup.get("keeps")
     if isinstance(keeps, int) and keeps not in before:
@@ -194,7 +196,9 @@ def _setup_misses(
             yield Miss((*at, "cut", name), found, key=True)
         cutter = _name(_map(cut).get("cutter"))
         if cutter is not None and cutter not in cutters:
-            yield Miss((*at, "cut", name, "cutter"), f"there is no cutter '{cutter}'. {_offer(cutter, cutters, '')}")
+            yield Miss(
+                (*at, "cut", name, "cutter"), f"there is no cutter {quoted(cutter)}. {_offer(cutter, cutters, '')}"
+            )
         for i, gone in enumerate(_list(_map(cut).get("removes"))):
             yield from _surface(gone, (*at, "cut", name, "removes", i), surfaces, own)
         yield from _surface(_map(cut).get("from_surface"), (*at, "cut", name, "from_surface"), surfaces, own)

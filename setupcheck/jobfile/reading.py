@@ -3,22 +3,27 @@
 from __future__ import annotations
 
 import hashlib
-from collections.abc import Iterator
+import re
+from collections.abc import Iterable, Iterator, Mapping, Sequence
+from contextlib import suppress
 from dataclasses import dataclass
 from pathlib import Path
 from types import UnionType
-from typing import Annotated, Literal, Union, get_args, get_origin
+from typing import Annotated, Literal, TypeVar, Union, get_args, get_origin
 
-from pydantic import BaseModel, ValidationError
+from pydantic import BaseModel, TypeAdapter, ValidationError
 from pydantic_core import ErrorDetails
 
 from setupcheck.errors import JobError, Problem
-from setupcheck.jobfile import names
+from setupcheck.jobfile import names, sense
+from setupcheck.jobfile.models import Require, Surface
 from setupcheck.jobfile.setups import Job
-from setupcheck.notation import nearest
-from setupcheck.yamlfile import Place, Tree, parse, read_text, yaml11_surprise
+from setupcheck.notation import nearest, plain, quoted
+from setupcheck.yamlfile import Data, Place, Tree, parse, read_text
 
 Loc = tuple[str | int, ...]
+K = TypeVar("K", str, int)
+T = TypeVar("T")
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -91,7 +96,7 @@ def read_job_text(text: str, file: str) -> LoadedJob:
     try:
         job = Job.model_validate(tree.data, context={"units": tree.data.get("units")})
     except ValidationError as wrong:
-        problems += [_problem(error, tree) for error in wrong.errors(include_url=False)]
+        problems += _problems(wrong.errors(include_url=False), tree)
     for miss in (*names.misses(tree.data), *_contradictions(tree.data, job)):
         place = tree.key_place(miss.path) if miss.key else tree.place(miss.path)
         problems.append(_at(place, tree.dotted(miss.path), miss.message))
@@ -100,25 +105,30 @@ def read_job_text(text: str, file: str) -> LoadedJob:
     return LoadedJob(job, tree, Path(file).name, hashlib.sha256(text.encode()).hexdigest())
 
 
-def _contradictions(data: dict[str, Data], job: Job | None) -> Iterator[names.Miss]:
-    """What valid entries say against each other. Where the file has errors, the surfaces and requirements that can be
-    read are compared all the same, so that one run tells everything."""
-    units = data.get("units")
-    parts: dict[str, dict[str, Surface]]
+def _contradictions(data: Mapping[str, Data], job: Job | None) -> Iterator[names.Miss]:
+    """What entries say against each other. Where the file has errors, the surfaces and requirements that can be read
+    are compared all the same, so that one run tells everything."""
+    units: Literal["mm", "in"] = "in" if data.get("units") == "in" else "mm"
     if job is not None:
-        parts = {name: part.surfaces for name, part in job.parts.items()}
+        surfaces = {name: part.surfaces for name, part in job.parts.items()}
         asked = dict(enumerate(job.require))
     else:
-        parts = {
-            name: dict(_readable(SURFACE, _entries(_inside(part, "surfaces")), units))
-            for name, part in _entries(data.get("parts"))
-        }
-        asked = dict(_readable(REQUIRE, _entries(data.get("require")), units))
-    return sense.contradictions(parts, asked, names.uses(data), units="in" if units == "in" else "mm")
+        parts, require = data.get("parts"), data.get("require")
+        surfaces = {}
+        for name, part in parts.items() if isinstance(parts, dict) else ():
+            nodes = part.get("surfaces") if isinstance(part, dict) else None
+            surfaces[name] = _readable(TypeAdapter(Surface), nodes.items() if isinstance(nodes, dict) else (), units)
+        asked = _readable(TypeAdapter(Require), enumerate(require) if isinstance(require, list) else (), units)
+    return sense.contradictions(surfaces, asked, names.uses(data), units=units)
 
 
-SURFACE: TypeAdapter[Surface] = TypeAdapter(Surface)
-REQUIRE: TypeAdapter[Require] = TypeAdapter(Require)
+def _readable(adapter: TypeAdapter[T], entries: Iterable[tuple[K, Data]], units: str) -> dict[K, T]:
+    """The entries that are valid by themselves."""
+    found: dict[K, T] = {}
+    for key, node in entries:
+        with suppress(ValidationError):
+            found[key] = adapter.validate_python(node, context={"units": units})
+    return found
 
 
 def _at(place: Place, path: str, message: str) -> Problem:
@@ -126,82 +136,112 @@ def _at(place: Place, path: str, message: str) -> Problem:
     return Problem(path, place.line, place.column, place.length, problem, hint)
 
 
+def _problems(errors: Sequence[ErrorDetails], tree: Tree) -> Iterator[Problem]:
+    """pydantic's errors in shop words. A key that is missing because its name is mistyped is told once, as mistyped."""
+    meant = {
+        (*loc[:-1], near)
+        for error in errors
+        if error["type"] == "extra_forbidden"
+        for loc in (tuple(error["loc"]),)
+        if (near := nearest(str(loc[-1]), _fields_at(loc[:-1])))
+    }
+    return (_problem(e, tree) for e in errors if e["type"] != "missing" or tuple(e["loc"]) not in meant)
+
+
 def _problem(error: ErrorDetails, tree: Tree) -> Problem:
     """A pydantic error in shop words, at its place in the file."""
     loc: Loc = tuple(error["loc"])
     kind, ctx, given = error["type"], error.get("ctx", {}), error.get("input")
     path = tree.dotted(loc, missing=kind == "missing")
-    if kind == "extra_forbidden":
-        allowed = _fields_at(loc[:-1])
-        near = nearest(str(loc[-1]), allowed)
-        offer = f"Did you mean {near}?" if near else f"Known here: {', '.join(allowed[:14])}"
-        return _at(tree.key_place(loc), path, f"'{loc[-1]}' is not a key of this entry. {offer}")
-    if kind == "missing":
-        return _at(
-            tree.key_place(loc[:-1]) if len(loc) > 1 else tree.place(()),
-            path,
-            f"'{loc[-1]}' is missing here. Write {loc[-1]}: …",
-        )
-    if kind in ("union_tag_not_found", "union_tag_invalid"):
-        tags = [t.strip().strip("'") for t in str(ctx.get("expected_tags", "")).split(",")] or list(_tags_at(loc))
-        tags = [t for t in tags if t] or list(_tags_at(loc))
-        if kind == "union_tag_not_found":
-            return _at(tree.place(loc), f"{path}.kind", f"'kind' is missing here. Write kind: one of {', '.join(tags)}")
-        near = nearest(str(ctx.get("tag")), tags)
-        return _at(
-            tree.place((*loc, "kind")),
-            f"{path}.kind",
-            f"'{ctx.get('tag')}' is not a kind of surface. {f'Did you mean {near}?' if near else 'Write one of: ' + ', '.join(tags)}",
-        )
     place = tree.place(loc)
-    surprise = yaml11_surprise(given) if isinstance(given, str) else None
-    if kind == "literal_error":
-        choices = [c.strip("' ") for c in str(ctx.get("expected", "")).replace(" or ", ", ").split(", ")]
-        near = nearest(str(given), choices)
-        offer = f"Did you mean {near}?" if near else f"Write one of: {', '.join(choices)}"
-        return _at(place, path, f"'{given}' is not known here. {surprise or offer}")
-    if kind == "value_error":
-        message = str(ctx["error"])
-        return _at(place, path, message if surprise is None else f"{message.partition('. ')[0]}. {surprise}")
-    return _at(place, path, _plain_message(kind, ctx, given, surprise))
+    match kind:
+        case "extra_forbidden":
+            allowed = _fields_at(loc[:-1])
+            near = nearest(str(loc[-1]), allowed)
+            offer = f"Did you mean {near}?" if near else f"Known here: {', '.join(allowed[:14])}"
+            return _at(tree.key_place(loc), path, f"{quoted(loc[-1])} is not a key of this entry. {offer}")
+        case "missing":
+            holder = tree.key_place(loc[:-1]) if len(loc) > 1 else tree.place(())
+            return _at(holder, path, f"'{loc[-1]}' is missing here. Write {loc[-1]}: {_choices_at(loc)}")
+        case "union_tag_not_found":
+            kinds = ", ".join(_tags_at(loc))
+            return _at(place, f"{path}.kind", f"'kind' is missing here. Write kind: and one of {kinds}")
+        case "union_tag_invalid":
+            kind_of = given.get("kind") if isinstance(given, dict) else given
+            offer = _offer(kind_of, _tags_at(loc))
+            return _at(
+                tree.place((*loc, "kind")), f"{path}.kind", f"{quoted(kind_of)} is not a kind of surface. {offer}"
+            )
+        case "literal_error":
+            offer = _offer(
+                given, [c.strip("' ") for c in str(ctx.get("expected", "")).replace(" or ", ", ").split(", ")]
+            )
+            says = "nothing is written here" if given is None else f"{quoted(given)} is not known here"
+            return _at(place, path, f"{says}. {offer}")
+        case "value_error":
+            return _at(place, path, str(ctx["error"]))
+        case _:
+            return _at(place, path, _plain_message(kind, ctx, _written(tree, loc, given), loc))
 
 
-def _plain_message(kind: str, ctx: dict[str, object], given: object, surprise: str | None) -> str:
+def _offer(given: object, choices: Sequence[str]) -> str:
+    near = nearest(given, choices) if isinstance(given, str) else None
+    if near is not None:
+        return f"Did you mean {near}?"
+    return f"Write {choices[0]}" if len(choices) == 1 else f"Write one of: {', '.join(choices)}"
+
+
+def _written(tree: Tree, loc: Loc, given: object) -> object:
+    """What stands in the file at a place, rather than what a reader made of it (`30 %`, not 0.3)."""
+    node: object = tree.data
+    for step in loc:
+        if isinstance(node, dict) and step in node:
+            node = node[str(step)]
+        elif isinstance(node, list) and isinstance(step, int) and step < len(node):
+            node = node[step]
+        elif step not in ("at_most", "nominal", *_tags_at(loc)):
+            return given
+    return node
+
+
+_BOUNDS = {
+    "greater_than_equal": ("ge", "at least"),
+    "less_than_equal": ("le", "at most"),
+    "greater_than": ("gt", "more than"),
+    "less_than": ("lt", "less than"),
+}
+_WANTS = {
+    "int_parsing": "a whole number",
+    "int_parsing_size": "a smaller whole number",
+    "int_type": "a whole number",
+    "int_from_float": "a whole number",
+    "string_type": "a text",
+    "dict_type": "names with their entries, as in name: {…}",
+    "tuple_type": "a list, as in [first, second]",
+    "string_too_short": "a longer text",
+    "too_short": "at least one entry",
+}
+
+
+def _plain_message(kind: str, ctx: Mapping[str, object], given: object, loc: Loc) -> str:
     """Messages for plain type and range errors."""
-    shown = (
-        "nothing"
-        if given is None
-        else f"'{given}'"
-        if isinstance(given, str | int | float)
-        else {dict: "a map", list: "a list"}.get(type(given), "this")
-    )
-    bounds = {
-        "greater_than_equal": ("ge", "at least"),
-        "less_than_equal": ("le", "at most"),
-        "greater_than": ("gt", "more than"),
-        "less_than": ("lt", "less than"),
-    }
-    if kind in bounds:
-        key, words = bounds[kind]
-        return f"{shown} is out of range. Write {words} {ctx.get(key)}"
-    wants = {
-        "int_parsing": "a whole number",
-        "int_type": "a whole number",
-        "int_from_float": "a whole number",
-        "string_type": "a text",
-        "model_type": "a map of keys",
-        "model_attributes_type": "a map of keys",
-        "dict_type": "a map of keys",
-        "tuple_type": "a list",
-        "list_type": "a list",
-        "bool_parsing": "true or false",
-        "bool_type": "true or false",
-        "float_parsing": "a number",
-        "float_type": "a number",
-        "string_too_short": "a longer text",
-        "too_short": "at least one entry",
-    }
-    return f"{shown} does not belong here. {surprise or 'Write ' + wants.get(kind, 'another value')}"
+    if kind in _BOUNDS:
+        key, words = _BOUNDS[kind]
+        limit = ctx.get(key)
+        return f"{quoted(given)} is out of range. Write {words} {plain(limit) if isinstance(limit, int | float) else limit}"
+    wants = _WANTS.get(kind, "another value")
+    if kind in ("model_type", "model_attributes_type"):
+        wants = f"keys and values, as in {{{', '.join(f'{key}: …' for key in _first_fields(loc))}}}"
+    if given is None:
+        return f"nothing is written here. Write {wants}"
+    noted = isinstance(given, str) and re.match(r"[^\s#]+#\s", given)
+    return f"{quoted(given)} does not belong here. {'A note needs a space before its #' if noted else f'Write {wants}'}"
+
+
+def _first_fields(loc: Loc) -> list[str]:
+    """Keys an entry cannot do without, or the first of those it knows."""
+    fields = [(f.alias or name, f.is_required()) for m in _models_at(loc)[:1] for name, f in m.model_fields.items()]
+    return ([name for name, needed in fields if needed] or [name for name, _ in fields])[:4]
 
 
 def _models(annotation: object) -> Iterator[type[BaseModel]]:
@@ -214,18 +254,26 @@ def _models(annotation: object) -> Iterator[type[BaseModel]]:
 
 
 def _models_at(loc: Loc) -> list[type[BaseModel]]:
+    """Models that may stand at a place; the steps of pydantic are keys, names and numbers of entries, and union tags."""
     here: list[type[BaseModel]] = [Job]
+    named = False  # the next step is the name or number of an entry, not a key
     for step in loc:
-        below = [
-            m
-            for model in here
-            for name, field in model.model_fields.items()
-            if step in (field.alias, name)
-            for m in _models(field.annotation)
-        ]
-        tagged = [m for m in here if step in _tags(m)]
-        here = below or tagged or here
+        if named:
+            named = False
+            continue
+        fields = [field for model in here for name, field in model.model_fields.items() if step in (field.alias, name)]
+        if fields:
+            here = [m for field in fields for m in _models(field.annotation)]
+            named = any(_holds_many(field.annotation) for field in fields)
+        else:
+            here = [m for m in here if step in _tags(m)] or here
     return here
+
+
+def _holds_many(annotation: object) -> bool:
+    """A map of names to entries, or a list of them; perhaps optional."""
+    origin = get_origin(annotation)
+    return origin in (dict, tuple) or (origin in (Union, UnionType) and any(map(_holds_many, get_args(annotation))))
 
 
 def _tags(model: type[BaseModel]) -> tuple[str, ...]:
@@ -239,3 +287,10 @@ def _tags_at(loc: Loc) -> tuple[str, ...]:
 
 def _fields_at(loc: Loc) -> list[str]:
     return list(dict.fromkeys(field.alias or name for m in _models_at(loc) for name, field in m.model_fields.items()))
+
+
+def _choices_at(loc: Loc) -> str:
+    """What a missing key may hold, where that is a short list; else a gap to fill."""
+    kinds = [f.annotation for m in _models_at(loc[:-1]) for n, f in m.model_fields.items() if loc[-1] in (f.alias, n)]
+    choices = get_args(kinds[0]) if kinds and get_origin(kinds[0]) is Literal else ()
+    return " or ".join(str(c) for c in choices) if 0 < len(choices) <= 4 else "…"

@@ -11,7 +11,7 @@ from collections.abc import Callable, Iterator, Mapping
 from dataclasses import dataclass
 
 from setupcheck.jobfile.models import Flat, Pattern, Require, Round, Surface, Throat, Toothing
-from setupcheck.jobfile.names import Miss, Uses
+from setupcheck.jobfile.names import Miss, Ref, Uses, find_surface
 from setupcheck.notation import plain
 
 TOUCH = 1e-6  # mm; two lengths that only touch do not overlap: far below every size, far above rounding; our choice
@@ -30,18 +30,31 @@ LIMIT_EXAMPLE = {"length": "40 um", "angle": '75"', "torque": "40 N m", "fractio
 MAY_BE_NEGATIVE = ("length", "allowance", "backlash", "pitch-circle")
 """Figures with a sign; all others are a full movement, a range or a share and never below zero."""
 
-_FITS = {
-    "square": (("face",), "Write a face that the part is squared on"),
-    "stop": (("face", "centre"), "Write a face that the part is stopped on"),
-    "clock": (("teeth", "holes", "slot"), "Write a slot, a hole pattern or a toothing"),
+_BETWEEN_GAPS = (
+    "cumulative-pitch", "single-pitch", "gap-centre-pitch", "index-range", "index-within", "on-workpiece", "chord",
+)  # fmt: skip
+"""Figures that compare one tooth, gap or hole with another."""
+
+_ONE = {"teeth": "tooth", "holes": "hole", "slot": "slot"}
+
+_DATUMS = {
+    "centre": ("cylinder, bore, taper, thread, centre, throat, teeth, holes", "centred on", "a cylinder or a bore"),
+    "square": ("face", "squared on", "a face"),
+    "stop": ("face, centre", "stopped on", "a face"),
+    "clock": ("teeth, holes, slot", "clocked on", "a slot, a hole pattern or a toothing"),
 }
+"""For each step of a hold: kinds of surface it can be set on, what it does, what to write."""
 
 
 @dataclass(frozen=True, slots=True)
 class _Outside:
-    """An outside surface of revolution: its stretch and size, and whether it is stock or taken away by a cut."""
+    """An outside surface of revolution: its stretch and size, and whether it is stock or taken away by a cut.
+
+    sure  it is outside beyond doubt: a taper or thread may as well be cut in a bore, the job file does not say
+    """
 
     name: str
+    sure: bool
     low: float
     high: float
     diameter: float
@@ -62,47 +75,43 @@ def contradictions(
         return f"{plain(round(mm / INCH, 6))} in" if units == "in" else f"{plain(round(mm, 6))} mm"
 
     for part, surfaces in parts.items():
-        for path, message in _part(part, surfaces, uses, shown):
-            yield Miss(("parts", part, "surfaces", *path), message)
+        for key, message in _part(part, surfaces, uses, shown):
+            yield Miss(("parts", part, "surfaces", *key), message)
     yield from _holds(parts, uses)
     for i, asked in require.items():
         yield from _require(i, asked)
+        yield from _pitch(i, asked, parts)
 
 
-Found = Iterator[tuple[tuple[str, ...], str]]
-
-
-def _part(part: str, surfaces: Mapping[str, Surface], uses: Uses, shown: Callable[[float], str]) -> Found:
+def _part(
+    part: str, surfaces: Mapping[str, Surface], uses: Uses, shown: Callable[[float], str]
+) -> Iterator[tuple[tuple[str, str], str]]:
+    """((surface, key), message) of what is wrong in the sizes of one part."""
     outsides = [
-        _Outside(name, s.low, s.high, s.diameter.value, s.made == "stock", (part, name) in uses.removed)
+        _Outside(
+            name, s.kind == "cylinder", s.low, s.high, s.diameter.value, s.made == "stock", (part, name) in uses.removed
+        )
         for name, s in surfaces.items()
-        if isinstance(s, Round) and s.kind != "bore" and not (s.kind == "thread" and _inside(s, surfaces))
+        if isinstance(s, Round) and s.kind != "bore"
     ]
-    kept = [s for name, s in surfaces.items() if s.made != "stock" and (part, name) not in uses.removed]
-    ends = _ends(kept)
+    ends = _ends([s for name, s in surfaces.items() if s.made != "stock" and (part, name) not in uses.removed])
     for name, surface in surfaces.items():
-        if isinstance(surface, Round) and surface.kind == "bore":
-            yield from _bore(name, surface, outsides, ends, shown)
-        elif isinstance(surface, Round) and surface.made is None and (part, name) in uses.cut:
-            yield from _cylinder(name, surface, outsides, shown)
-        elif isinstance(surface, Flat) and surface.diameter and surface.hole and surface.hole >= surface.diameter:
-            yield (name, "hole"), (
-                f"a hole of {shown(surface.hole)} leaves nothing of a face of {shown(surface.diameter)}. "
-                "Write a smaller hole"
-            )
-        elif isinstance(surface, Throat):
-            yield from _throat(name, surface, outsides, shown)
-        elif isinstance(surface, Toothing):
-            yield from _teeth(name, surface, outsides, shown)
-        elif isinstance(surface, Pattern):
-            yield from _holes(name, surface, shown)
-
-
-def _inside(thread: Round, surfaces: Mapping[str, Surface]) -> bool:
-    """A thread whose stretch is that of a bore it may be cut in; a job file does not say which side it is on."""
-    return any(
-        isinstance(s, Round) and s.kind == "bore" and _overlap(s, thread) > TOUCH for s in surfaces.values()
-    )
+        key, message = "diameter", None
+        match surface:
+            case Round(kind="bore"):
+                message = _bore(surface, outsides, ends, shown)
+            case Round(made=None) if (part, name) in uses.cut:
+                message = _cylinder(surface, outsides, shown)
+            case Flat():
+                key, message = "hole", _face(surface, shown)
+            case Throat():
+                message = _throat(surface, outsides, shown)
+            case Toothing():
+                key, message = "width", _teeth(surface, outsides, shown)
+            case Pattern(kind="holes"):
+                message = _holes(surface, shown)
+        if message is not None:
+            yield (name, key), message
 
 
 def _ends(surfaces: list[Surface]) -> tuple[float, float]:
@@ -116,8 +125,8 @@ def _overlap(a: Round | _Outside, b: Round | _Outside) -> float:
 
 
 def _bore(
-    name: str, bore: Round, outsides: list[_Outside], ends: tuple[float, float], shown: Callable[[float], str]
-) -> Found:
+    bore: Round, outsides: list[_Outside], ends: tuple[float, float], shown: Callable[[float], str]
+) -> str | None:
     """A bore as large as an outside surface that still stands over the same length.
 
     A bore that does not go through may be a recess round a spigot, if something larger stands over that length.
@@ -125,28 +134,35 @@ def _bore(
     size = bore.diameter.value
     through = bore.low <= ends[0] + TOUCH and bore.high >= ends[1] - TOUCH
     for out in outsides:
-        if _overlap(bore, out) <= TOUCH or size < out.diameter or (out.removed and not out.stock):
+        if not out.sure or _overlap(bore, out) <= TOUCH or size < out.diameter or (out.removed and not out.stock):
             continue
-        larger = [o for o in outsides if o.diameter > size and _overlap(o, out) > TOUCH and (out.stock or not o.removed)]
-        if larger and (out.stock or not through):
+        around = [o for o in outsides if o.diameter > size and _overlap(o, out) > TOUCH]
+        if around if out.stock else (not through and any(not o.removed for o in around)):
             continue
-        yield (name, "diameter"), (
+        taken = "" if out.stock else f", or removes: [{out.name}] at the cut that takes it away"
+        return (
             f"a bore of {shown(size)} leaves nothing of {out.name}, which is {shown(out.diameter)} from "
-            f"{shown(out.low)} to {shown(out.high)}. Write a smaller bore"
-            + ("" if out.stock else f", or removes: [{out.name}] at the cut that takes it away")
+            f"{shown(out.low)} to {shown(out.high)}. Write a smaller bore{taken}"
         )
-        return
+    return None
 
 
-def _cylinder(name: str, cylinder: Round, outsides: list[_Outside], shown: Callable[[float], str]) -> Found:
+def _cylinder(cylinder: Round, outsides: list[_Outside], shown: Callable[[float], str]) -> str | None:
     """An outside surface that is larger than the stock it is cut from."""
     stock = [o for o in outsides if o.stock and _overlap(o, cylinder) > TOUCH]
-    if stock and cylinder.diameter.value > max(o.diameter for o in stock) + TOUCH:
-        largest = max(stock, key=lambda o: o.diameter)
-        yield (name, "diameter"), (
-            f"{shown(cylinder.diameter.value)} cannot be cut from {largest.name}, which is {shown(largest.diameter)}. "
-            "Write a larger stock, or a smaller diameter"
-        )
+    if not stock or cylinder.diameter.value <= max(o.diameter for o in stock) + TOUCH:
+        return None
+    largest = max(stock, key=lambda o: o.diameter)
+    return (
+        f"{shown(cylinder.diameter.value)} cannot be cut from {largest.name}, which is {shown(largest.diameter)}. "
+        "Write a larger stock, or a smaller diameter"
+    )
+
+
+def _face(face: Flat, shown: Callable[[float], str]) -> str | None:
+    if face.diameter is None or face.hole is None or face.hole < face.diameter:
+        return None
+    return f"a hole of {shown(face.hole)} leaves nothing of a face of {shown(face.diameter)}. Write a smaller hole"
 
 
 def _at(outsides: list[_Outside], z: float) -> list[_Outside]:
@@ -155,55 +171,50 @@ def _at(outsides: list[_Outside], z: float) -> list[_Outside]:
     return [o for o in there if not o.stock] or there
 
 
-def _throat(name: str, throat: Throat, outsides: list[_Outside], shown: Callable[[float], str]) -> Found:
+def _throat(throat: Throat, outsides: list[_Outside], shown: Callable[[float], str]) -> str | None:
+    """A throat that lies outside the metal."""
     there = _at(outsides, throat.at)
-    if there and throat.diameter >= max(o.diameter for o in there):
-        rim = max(there, key=lambda o: o.diameter)
-        yield (name, "diameter"), (
-            f"a throat of {shown(throat.diameter)} takes nothing off {rim.name}, which is {shown(rim.diameter)} there. "
-            "Write a smaller throat"
-        )
+    if not any(o.sure for o in there) or throat.diameter < max(o.diameter for o in there):
+        return None
+    rim = max(there, key=lambda o: o.diameter)
+    return (
+        f"a throat of {shown(throat.diameter)} takes nothing off {rim.name}, which is {shown(rim.diameter)} there. "
+        "Write a smaller throat"
+    )
 
 
-def _teeth(name: str, teeth: Toothing, outsides: list[_Outside], shown: Callable[[float], str]) -> Found:
+def _teeth(teeth: Toothing, outsides: list[_Outside], shown: Callable[[float], str]) -> str | None:
     """Teeth that run out over a place where the part is smaller than their circle, though it is larger at their middle."""
     if teeth.width is None or not any(o.diameter > teeth.on_circle for o in _at(outsides, teeth.at)):
-        return
+        return None
     for side in (-1.0, 1.0):
         end = teeth.at + side * teeth.width / 2.0
         there = _at(outsides, end - side * 10.0 * TOUCH)
-        if there and all(o.diameter < teeth.on_circle for o in there):
+        if any(o.sure for o in there) and all(o.diameter < teeth.on_circle for o in there):
             hub = max(there, key=lambda o: o.diameter)
-            yield (name, "width"), (
+            return (
                 f"teeth of {shown(teeth.width)} run to {shown(end)}, where the part is {hub.name} with "
                 f"{shown(hub.diameter)}, inside their circle of {shown(teeth.on_circle)}. Write a smaller width"
             )
-            return
+    return None
 
 
-def _holes(name: str, holes: Pattern, shown: Callable[[float], str]) -> Found:
-    """Holes that run into each other: the chord of neighbours, D sin(pi/n), is below the hole's diameter."""
-    if holes.kind == "holes" and holes.count > 1 and holes.diameter is not None:
-        chord = holes.on_circle * math.sin(math.pi / holes.count)
-        if chord <= holes.diameter:
-            yield (name, "diameter"), (
-                f"{holes.count} holes of {shown(holes.diameter)} run into each other on a circle of "
-                f"{shown(holes.on_circle)}. Write a smaller diameter, fewer holes or a larger circle"
-            )
+def _holes(holes: Pattern, shown: Callable[[float], str]) -> str | None:
+    """Holes that run into each other: the chord of neighbours, D sin(pi/n), is not above the hole's diameter."""
+    if holes.count < 2 or holes.diameter is None or holes.on_circle * math.sin(math.pi / holes.count) > holes.diameter:
+        return None
+    return (
+        f"{holes.count} holes of {shown(holes.diameter)} run into each other on a circle of {shown(holes.on_circle)}. "
+        "Write a smaller diameter, fewer holes or a larger circle"
+    )
 
 
 def _holds(parts: Mapping[str, Mapping[str, Surface]], uses: Uses) -> Iterator[Miss]:
     for path, part, name in uses.held:
-        step = str(path[-2])
         surface = parts.get(part, {}).get(name)
-        if surface is None:
-            continue
-        if step in _FITS:
-            kinds, advice = _FITS[step]
-            if surface.kind not in kinds:
-                yield Miss(path, f"{name} is a {surface.kind}, which is no {step} datum. {advice}")
-        elif surface.kind in ("face", "slot"):
-            yield Miss(path, f"{name} is a {surface.kind}, which has no axis to centre on. Write a cylinder or a bore")
+        kinds, does, advice = _DATUMS[str(path[-2]).removeprefix("and_")]
+        if surface is not None and surface.kind not in kinds.split(", "):
+            yield Miss(path, f"the part cannot be {does} {name}, a {surface.kind}. Write {advice}")
 
 
 def limit_kind(asked: Require) -> str:
@@ -234,6 +245,20 @@ def _require(i: int, asked: Require) -> Iterator[Miss]:
         yield Miss(("require", i, "at_least"), "at_least is above at_most. Write between: [low, high]")
     if asked.of is not None and asked.of == asked.about:
         yield Miss(("require", i, "about"), f"{asked.of} about itself is always zero. Write the surface it refers to")
+
+
+def _pitch(i: int, asked: Require, parts: Mapping[str, Mapping[str, Surface]]) -> Iterator[Miss]:
+    """A figure from one gap or hole to the next, asked of a single one."""
+    if asked.what not in _BETWEEN_GAPS or asked.of is None:
+        return
+    ref = find_surface(asked.of, {part: tuple(surfaces) for part, surfaces in parts.items()})
+    surface = parts[ref.part][ref.surface] if isinstance(ref, Ref) else None
+    if isinstance(surface, Toothing | Pattern) and surface.count == 1:
+        yield Miss(
+            ("require", i, "of"),
+            f"{asked.of} is a single {_ONE[surface.kind]}, which has no {asked.what}. "
+            "Write a toothing or a pattern of two or more",
+        )
 
 
 def _a(kind: str) -> str:

@@ -4,12 +4,11 @@ from __future__ import annotations
 
 from typing import Annotated, Literal
 
-from pydantic import BeforeValidator, Field, WithJsonSchema, model_validator
+from pydantic import BeforeValidator, Field, ValidationInfo, WithJsonSchema, model_validator
 
 from setupcheck.jobfile.models import (
     Checked,
     Cutter,
-    Deviation,
     Dim,
     Error,
     Facing,
@@ -18,6 +17,7 @@ from setupcheck.jobfile.models import (
     Part,
     Place,
     Require,
+    RunOut,
     Shop,
     Waive,
     Worm,
@@ -35,6 +35,7 @@ from setupcheck.jobfile.types import (
     Size,
     Temperature,
     TemperatureDifference,
+    in_file_units,
 )
 
 Device = Literal[
@@ -63,7 +64,7 @@ class Through(Shop):
     """One device that stands on another, with its own error: `through: [{by: centres, runout: 4 um}]`."""
 
     by: str
-    runout: Error | None = None
+    runout: RunOut | None = None
 
 
 class Span(Shop):
@@ -73,9 +74,10 @@ class Span(Shop):
     high: Length = Field(alias="to")
 
     @model_validator(mode="after")
-    def it_has_a_length(self) -> Span:
+    def it_has_a_length(self, info: ValidationInfo) -> Span:
         if self.high <= self.low:
-            raise ValueError(f"it runs from {self.low:g} to {self.high:g} mm. Write from: below to:")
+            low, high = in_file_units(self.low, info), in_file_units(self.high, info)
+            raise ValueError(f"it runs from {low} to {high}. Write from: below to:")
         return self
 
 
@@ -91,7 +93,7 @@ class Centre(Shop):
     on: str
     by: Device
     at: Length | None = None
-    runout: Error | None = None
+    runout: RunOut | None = None
     clearance: Play | None = None
     rests: Literal["hanging", "pushed", "free", "centred"] | None = None
     x: Bound | None = None
@@ -100,26 +102,18 @@ class Centre(Shop):
     through: tuple[Through, ...] = ()
     turned: Angle | None = None
 
-    @model_validator(mode="after")
-    def a_dial_reading_has_no_sign(self) -> Centre:
-        Deviation.never_negative(self.runout)
-        for below in self.through:
-            Deviation.never_negative(below.runout)
-        return self
-
 
 class Square(Shop):
     """The face that rules the lean; `across` is the circle the indicator ran on."""
 
     on: str
     by: str | None = None
-    face_runout: Error | None = None
+    face_runout: RunOut | None = None
     across: Size | None = None
     chip: Bound | None = None
 
     @model_validator(mode="after")
     def a_reading_has_its_circle(self) -> Square:
-        Deviation.never_negative(self.face_runout)
         if (self.face_runout is not None or self.chip is not None) and self.across is None:
             raise ValueError("face_runout needs the circle it is read on. Write across: 100")
         return self
@@ -289,7 +283,7 @@ class Join(Shop):
     inner: str
     by: Literal["shrink", "press", "slide", "taper", "screw", "bond"]
     square: Literal["bore", "shoulder"] | None = None
-    fit_error: Error | None = None
+    fit_error: RunOut | None = None
     clearance: Play | None = None
     rests: Literal["hanging", "pushed", "free", "centred"] | None = None
     stop: Stop | None = None

@@ -15,8 +15,22 @@ TEXT_OR_NUMBER = WithJsonSchema({"type": ["string", "number"]})
 TEXT = WithJsonSchema({"type": "string"})
 
 
-def _units(info: ValidationInfo) -> Literal["mm", "in"]:
+def units_of(info: ValidationInfo) -> Literal["mm", "in"]:
+    """Units of the file; mm where it states none that is known, which is an error of its own."""
     return "in" if (info.context or {}).get("units") == "in" else "mm"
+
+
+def in_file_units(mm: float, info: ValidationInfo) -> str:
+    """A size for a message, in the units of the file: `96 mm`, `3.75 in`."""
+    value, unit = (mm / 25.4, "in") if units_of(info) == "in" else (mm, "mm")
+    return f"{notation.plain(round(value, 6))} {unit}"
+
+
+def _shown(given: object) -> str:
+    """A list of plain values as it stands in the file, anything else quoted."""
+    if isinstance(given, list) and all(isinstance(g, str | int | float) for g in given):
+        return f"[{', '.join(notation.quoted(g).strip(chr(39)) for g in given[:4])}{', …' if len(given) > 4 else ''}]"
+    return notation.quoted(given)
 
 
 def _scalar(given: object) -> Given:
@@ -32,49 +46,49 @@ def _plain(read: Callable[[Given], float]) -> BeforeValidator:
 
 
 def _size(given: object, info: ValidationInfo) -> float:
-    return notation.length(_scalar(given), units=_units(info))
+    return notation.length(_scalar(given), units=units_of(info))
 
 
 def _positive_size(given: object, info: ValidationInfo) -> float:
-    value = notation.length(_scalar(given), units=_units(info))
+    value = notation.length(_scalar(given), units=units_of(info))
     if value <= 0.0:
-        raise ValueError(f"{given!r} is not a size. Write a length above zero")
+        raise ValueError(f"{_shown(given)} is not a size. Write a length above zero")
     return value
 
 
 def _bound(given: object, info: ValidationInfo) -> float:
-    return notation.bound(_scalar(given), units=_units(info), unit_needed=True)
+    return notation.bound(_scalar(given), units=units_of(info), unit_needed=True)
 
 
 def _signed_error(given: object, info: ValidationInfo) -> float:
-    return notation.length(_scalar(given), units=_units(info), unit_needed=True)
+    return notation.length(_scalar(given), units=units_of(info), unit_needed=True)
 
 
 def _range(given: object, info: ValidationInfo) -> tuple[float, float]:
     if not isinstance(given, list | str):
-        raise ValueError(f"{given!r} is not a range. Write the smallest and the largest: [2 um, 14 um]")
-    return notation.length_range(given, units=_units(info), unit_needed=True)
+        raise ValueError(f"{_shown(given)} is not a range. Write the smallest and the largest: [2 um, 14 um]")
+    return notation.length_range(given, units=units_of(info), unit_needed=True)
 
 
 def _amount(given: object, info: ValidationInfo) -> Amount:
-    return notation.amount(_scalar(given), units=_units(info))
+    return notation.amount(_scalar(given), units=units_of(info))
 
 
 def _amounts(given: object, info: ValidationInfo) -> tuple[Amount, Amount]:
     if not isinstance(given, list) or len(given) != 2:
-        raise ValueError(f"{given!r} is not a pair of limits. Write [20 um, 80 um]")
+        raise ValueError(f"{_shown(given)} is not a pair of limits. Write [20 um, 80 um]")
     low, high = (_amount(g, info) for g in given)
     if low.dimension != high.dimension or low.value > high.value:
-        raise ValueError(f"{given!r} does not run from low to high in one kind of unit. Write [20 um, 80 um]")
+        raise ValueError(f"{_shown(given)} does not run from low to high in one kind of unit. Write [20 um, 80 um]")
     return low, high
 
 
 def _service(given: object, info: ValidationInfo) -> tuple[float, float]:
     if not isinstance(given, list) or len(given) != 2:
-        raise ValueError(f"{given!r} is not a span of temperatures. Write [5 degC, 45 degC]")
+        raise ValueError(f"{_shown(given)} is not a span of temperatures. Write [5 degC, 45 degC]")
     low, high = (notation.temperature(_scalar(g)) for g in given)
     if low > high:
-        raise ValueError(f"{given!r} runs from warm to cold. Write the colder one first")
+        raise ValueError(f"{_shown(given)} runs from warm to cold. Write the colder one first")
     return low, high
 
 

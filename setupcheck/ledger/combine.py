@@ -19,8 +19,8 @@ from setupcheck.ledger.causes import TRUNCATION, Cause, stream_key
 from setupcheck.ledger.figures import Figure, Push
 from setupcheck.ledger.route import Pattern, Scatter
 
-Reals = NDArray[np.float64]
-Complexes = NDArray[np.complex128]
+Reals = NDArray[np.floating]
+Complexes = NDArray[np.complexfloating]
 
 TRIALS = 20_000
 """Trials of one Monte Carlo run: about 1e4/(1 - p) asks for 2e5 at 95 % (JCGM 101 7.2.2); a tenth of it settles the
@@ -28,13 +28,17 @@ chance within 0.2 %, and the sampling error is printed. Source: our screening ch
 
 
 class Draws:
-    """Random values of causes, drawn once each, every cause from its own stream named after it."""
+    """Random values of causes, drawn once each, every cause from its own stream named after it.
+
+    Single precision: a draw of an error is good to 1e-7 of itself; nominal lengths are added in double precision.
+    """
 
     def __init__(self, trials: int = TRIALS) -> None:
         self.trials = trials
         self._causes: dict[Cause, Complexes] = {}
         self._arcs: dict[int, tuple[Pattern, Reals]] = {}
         self._radials: dict[int, tuple[Pattern, Reals]] = {}
+        self.memo: dict[object, tuple[Reals, Reals]] = {}
 
     @staticmethod
     def stream(name: str) -> np.random.Generator:
@@ -45,32 +49,37 @@ class Draws:
         """X of one cause, shape (trials,); complex also where X is real."""
         found = self._causes.get(cause)
         if found is None:
-            found = self._causes[cause] = self._draw(cause) + cause.mean
+            found = self._causes[cause] = self._draw(cause)
+            if cause.mean:
+                found += np.complex64(cause.mean)
         return found
 
     def _draw(self, cause: Cause) -> Complexes:
         rng, n = self.stream(cause.key), self.trials
         match cause.law:
             case "disc":
-                return _polar(cause.high * np.sqrt(rng.random(n)), rng.random(n))
+                return _polar(_single(cause.high) * np.sqrt(_uniform(rng, n)), _uniform(rng, n))
             case "ring":
-                radius = cause.high + (cause.spread * _cut_normal(rng, n) if cause.spread else 0.0)
-                return _polar(np.broadcast_to(radius, (n,)), rng.random(n))
+                radius = np.full(n, cause.high, dtype=np.float32)
+                if cause.spread:
+                    radius += _single(cause.spread) * _cut_normal(rng, n)
+                return _polar(radius, _uniform(rng, n))
             case "blur":
-                return _polar(cause.spread * _cut_rayleigh(rng, n), rng.random(n))
+                return _polar(_single(cause.spread) * _cut_rayleigh(rng, n), _uniform(rng, n))
             case "clearance-disc" | "clearance-ring":
-                play = self.stream(cause.pair).random(n) if cause.pair else rng.random(n)
-                wall = 0.5 * (cause.low + (cause.high - cause.low) * play)
-                return _polar(wall * np.sqrt(rng.random(n)) if cause.law == "clearance-disc" else wall, rng.random(n))
+                play = _uniform(self.stream(cause.pair), n) if cause.pair else _uniform(rng, n)
+                wall = _single(cause.low / 2.0) + _single((cause.high - cause.low) / 2.0) * play
+                return _polar(
+                    wall * np.sqrt(_uniform(rng, n)) if cause.law == "clearance-disc" else wall, _uniform(rng, n)
+                )
             case "rectangle":
-                along_x = (2.0 * rng.random(n) - 1.0) * cause.low
-                return _complex(along_x, (2.0 * rng.random(n) - 1.0) * cause.high)
+                return _complex(_single(cause.low) * _both_ways(rng, n), _single(cause.high) * _both_ways(rng, n))
             case "length":
-                return _complex((2.0 * rng.random(n) - 1.0) * cause.high)
+                return _complex(_single(cause.high) * _both_ways(rng, n))
             case "gauss":
-                return _complex(cause.spread * _cut_normal(rng, n))
+                return _complex(_single(cause.spread) * _cut_normal(rng, n))
             case "one-sided":
-                return _complex(rng.random(n) * cause.high)
+                return _complex(_single(cause.high) * _uniform(rng, n))
             case "high-point":
                 assert cause.of is not None
                 return _complex(np.abs(self.account(cause.of)))
@@ -78,47 +87,52 @@ class Draws:
                 raise ValueError(f"{cause.key} is undetermined and has no value to draw")
 
     def account(self, account: Account) -> Complexes:
-        """Value of an account for all trials, shape (trials,)."""
-        total = np.full(self.trials, account.constant, dtype=complex)
+        """Value of a vector account for all trials, shape (trials,)."""
+        total = np.full(self.trials, account.constant, dtype=np.complex64)
         for cause, (a, b) in account.terms.items():
             x = self.cause(cause)
             if cause.is_real:
-                total += (a + b) * x
-            else:
-                if a:
-                    total += a * x
-                if b:
-                    total += b * np.conj(x)
+                total += np.complex64(a + b) * x
+                continue
+            if a:
+                total += np.complex64(a) * x
+            if b:
+                total += np.complex64(b) * np.conj(x)
+        return total
+
+    def real(self, account: Account) -> Reals:
+        """Value of a real account (a length, an angle) for all trials, double precision, shape (trials,)."""
+        total = np.full(self.trials, account.constant.real)
+        for cause, (a, b) in account.terms.items():
+            x = self.cause(cause)
+            total += _single(a.real + b.real) * x.real
+            if not cause.is_real:
+                total -= _single(a.imag - b.imag) * x.imag
         return total
 
     def scatter(self, scatter: Scatter, pattern: Pattern) -> Reals:
         """Per-place values of one scatter as lengths [mm], uniform within its bound, shape (trials, count)."""
         bound = scatter.bound * (pattern.radius if scatter.along == "angle" else 1.0)
-        drawn = self.stream(scatter.cause.key).random((self.trials, pattern.count), dtype=np.float32)
-        return np.asarray((drawn - 0.5) * (2.0 * bound), dtype=float)
+        drawn = self.stream(scatter.cause.key).random((pattern.count, self.trials), dtype=np.float32)
+        drawn -= np.float32(0.5)
+        drawn *= _single(2.0 * bound)
+        return drawn.T
 
     def arcs(self, pattern: Pattern) -> Reals:
         """Arc errors of all places from dividing alone [mm], shape (trials, count)."""
         found = self._arcs.get(id(pattern))
         if found is None:
             each = [self.scatter(s, pattern) for s in pattern.scatter if s.along != "radial"]
-            found = self._arcs[id(pattern)] = (
-                pattern,
-                teeth.division_arcs(
-                    pattern,
-                    [self.cause(p.cause) for p in pattern.periodic],
-                    [self.cause(c).real for c in pattern.drift],
-                    each,
-                    self.trials,
-                ),
-            )
+            waves = [self.cause(p.cause) for p in pattern.periodic]
+            drifts = [self.cause(c).real for c in pattern.drift]
+            found = self._arcs[id(pattern)] = (pattern, teeth.division_arcs(pattern, waves, drifts, each, self.trials))
         return found[1]
 
     def radials(self, pattern: Pattern) -> Reals:
         """Radial scatter of all places [mm], shape (trials, count)."""
         found = self._radials.get(id(pattern))
         if found is None:
-            total = np.zeros((self.trials, pattern.count))
+            total = np.zeros((pattern.count, self.trials), dtype=np.float32).T
             for s in pattern.scatter:
                 if s.along == "radial":
                     total += self.scatter(s, pattern)
@@ -126,29 +140,41 @@ class Draws:
         return found[1]
 
 
+def _single(value: float) -> np.float32:
+    return np.float32(value)
+
+
+def _uniform(rng: np.random.Generator, n: int) -> Reals:
+    return rng.random(n, dtype=np.float32)
+
+
+def _both_ways(rng: np.random.Generator, n: int) -> Reals:
+    return np.float32(2.0) * rng.random(n, dtype=np.float32) - np.float32(1.0)
+
+
 def _polar(radius: Reals, turns: Reals) -> Complexes:
-    angle = turns * (2.0 * np.pi)
+    angle = turns * np.float32(2.0 * np.pi)
     return _complex(radius * np.cos(angle), radius * np.sin(angle))
 
 
 def _complex(real: Reals, imag: Reals | float = 0.0) -> Complexes:
-    out = np.empty(len(real), dtype=np.complex128)
+    out = np.empty(len(real), dtype=np.complex64)
     out.real, out.imag = real, imag
     return out
 
 
 def _cut_normal(rng: np.random.Generator, n: int) -> Reals:
     """Standard normal numbers with everything beyond 3 drawn again."""
-    values = rng.standard_normal(n)
+    values = rng.standard_normal(n, dtype=np.float32)
     while (beyond := np.flatnonzero(np.abs(values) > TRUNCATION)).size:
-        values[beyond] = rng.standard_normal(beyond.size)
+        values[beyond] = rng.standard_normal(beyond.size, dtype=np.float32)
     return values
 
 
 def _cut_rayleigh(rng: np.random.Generator, n: int) -> Reals:
     """Lengths of two-dimensional standard normal vectors, none longer than 3 (inverse of the cut Rayleigh law)."""
-    share = rng.random(n) * (1.0 - math.exp(-(TRUNCATION**2) / 2.0))
-    return np.asarray(np.sqrt(-2.0 * np.log1p(-share)))
+    share = _uniform(rng, n) * _single(1.0 - math.exp(-(TRUNCATION**2) / 2.0))
+    return np.asarray(np.sqrt(np.float32(-2.0) * np.log1p(-share)))
 
 
 @dataclass(frozen=True, slots=True)

@@ -6,7 +6,7 @@ at its known value (`base`), and its value for a set of draws (`sample`). worst 
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 from typing import TYPE_CHECKING, Protocol
 
 import numpy as np
@@ -20,7 +20,7 @@ from setupcheck.ledger.route import Pattern
 if TYPE_CHECKING:
     from setupcheck.ledger.combine import Draws
 
-Reals = NDArray[np.float64]
+Reals = NDArray[np.floating]
 
 
 @dataclass(frozen=True, slots=True)
@@ -132,7 +132,7 @@ class Length:
         return self.account.undetermined()
 
     def sample(self, draws: Draws) -> Reals:
-        return draws.account(self.account).real
+        return draws.real(self.account)
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -190,7 +190,7 @@ class MidPlane:
         return tuple(dict.fromkeys(self.axial.undetermined() + self.lean.undetermined()))
 
     def sample(self, draws: Draws) -> Reals:
-        axial, lean = draws.account(self.axial).real, draws.account(self.lean)
+        axial, lean = draws.real(self.axial), draws.account(self.lean)
         wobble = self.pattern.radius * teeth.waves(lean, teeth.angles(self.pattern))
         return np.asarray(np.maximum(np.abs(axial - wobble.max(axis=1)), np.abs(axial - wobble.min(axis=1))))
 
@@ -202,6 +202,7 @@ class Tooth:
     flank     True: the worse of both flanks at fixed radius; False: gap centres
     stepwise  True: largest step between neighbours; False: max - min over the turn
     driven    True: as a worm driving one flank sees it (index figures)
+    oblique   what the lean of oblique gaps adds, as teeth.oblique has it
     factor    from arc on the pattern radius to the figure's unit (1, 1/r for an angle, D/(2 r) on a workpiece, …)
     """
 
@@ -212,14 +213,28 @@ class Tooth:
     factor: float = 1.0
     driven: bool = False
     signed: bool = False
+    oblique: Account = field(default_factory=Account)
+
+    def _sides(self) -> tuple[int, ...]:
+        return (1, -1) if self.flank and self.pattern.pressure_angle else (0,)
+
+    def _wave(self, side: int) -> Account:
+        """Vector F of one flank (0: gap centre): its arcs are Im(F exp(-i theta_j)) before division."""
+        own = self.offset * teeth.flank_turn(self.pattern, side=side, driven=self.driven)
+        if self.oblique == Account():
+            return own
+        return own + self.oblique * teeth.oblique_turn(self.pattern, side=side, driven=self.driven)
+
+    def _worse(self) -> Account:
+        return max((self._wave(side) for side in self._sides()), key=Account.largest)
 
     def base(self) -> float:
-        gain = teeth.gains(self.pattern, stepwise=self.stepwise, flank=self.flank)
+        gain = teeth.gains(self.pattern, stepwise=self.stepwise, flank=False)
         rounding = teeth.rounding_figure(self.pattern, stepwise=self.stepwise)
-        return self.factor * rounding + vector_pushes(self.offset, self.factor * gain.offset)[0]
+        return self.factor * rounding + vector_pushes(self._worse(), self.factor * gain.offset)[0]
 
     def pushes(self) -> list[Push]:
-        gain = teeth.gains(self.pattern, stepwise=self.stepwise, flank=self.flank)
+        gain = teeth.gains(self.pattern, stepwise=self.stepwise, flank=False)
         division = [
             Push(p.cause, 0.0, self.factor * gain.wave[p.harmonic] * (p.cause.bound + abs(p.cause.mean)))
             for p in self.pattern.periodic
@@ -230,7 +245,7 @@ class Tooth:
             if s.along != "radial"
         ]
         division += [Push(c, 0.0, self.factor * gain.drift * c.bound) for c in self.pattern.drift]
-        return merged(vector_pushes(self.offset, self.factor * gain.offset)[1], [p for p in division if p.up > 0.0])
+        return merged(vector_pushes(self._worse(), self.factor * gain.offset)[1], [p for p in division if p.up > 0.0])
 
     def _arc(self, bound: float, along: str) -> float:
         return bound * self.pattern.radius if along == "angle" else bound
@@ -246,14 +261,32 @@ class Tooth:
             for s in self.pattern.scatter
             if s.cause.law == "undetermined" and s.along != "radial" and self.pattern.count > 1
         ]
-        return tuple(dict.fromkeys((*self.offset.undetermined(), *mine)))
+        return tuple(dict.fromkeys((*self.offset.undetermined(), *self.oblique.undetermined(), *mine)))
 
     def sample(self, draws: Draws) -> Reals:
-        offset, arcs = draws.account(self.offset), draws.arcs(self.pattern)
-        figure = teeth.largest_steps if self.stepwise else teeth.ranges
-        sides = (1, -1) if self.flank and self.pattern.pressure_angle else (0,)
-        values = [figure(teeth.flank_arcs(offset, self.pattern, arcs, side=side, driven=self.driven)) for side in sides]
-        return np.asarray(self.factor * np.maximum.reduce(values))
+        ranges, steps = self._ranges_and_steps(draws)
+        return np.asarray((steps if self.stepwise else ranges) * self.factor)
+
+    def _ranges_and_steps(self, draws: Draws) -> tuple[Reals, Reals]:
+        """Range and largest step of the worse flank for all trials [mm]; figures of one ring share them."""
+        waves = [self._wave(side) for side in self._sides()]
+        terms = frozenset((i, c.key, a, b) for i, w in enumerate(waves) for c, (a, b) in w.terms.items())
+        key = (id(self.pattern), tuple(w.constant for w in waves), terms)
+        found = draws.memo.get(key)
+        if found is not None:
+            return found
+        vectors, arcs = [draws.account(w) * -1j for w in waves], draws.arcs(self.pattern)
+        places = teeth.angles(self.pattern)
+        ranges, steps = np.zeros(draws.trials, np.float32), np.zeros(draws.trials, np.float32)
+        block = max(1, teeth.BLOCK // self.pattern.count)
+        for start in range(0, draws.trials, block):
+            now = slice(start, start + block)
+            for vector in vectors:
+                flank = teeth.waves(vector[now], places) + arcs[now]
+                ranges[now] = np.maximum(ranges[now], teeth.ranges(flank))
+                steps[now] = np.maximum(steps[now], teeth.largest_steps(flank))
+        draws.memo[key] = ranges, steps
+        return ranges, steps
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -279,7 +312,7 @@ class FaceStock:
         return tuple(dict.fromkeys(self.axial.undetermined() + self.lean.undetermined()))
 
     def sample(self, draws: Draws) -> Reals:
-        return np.asarray(draws.account(self.axial).real - self.radius * np.abs(draws.account(self.lean)))
+        return np.asarray(draws.real(self.axial) - self.radius * np.abs(draws.account(self.lean)))
 
 
 def alternatives(figure: Figure) -> tuple[Figure, ...]:

@@ -60,8 +60,8 @@ class HolePosition:
         if self.turn is None:
             arcs = arcs - arcs.mean(axis=1, keepdims=True)
         else:
-            arcs = arcs + (self.pattern.radius * draws.account(self.turn).real)[:, None]
-        outward = draws.radials(self.pattern) + draws.account(self.pattern.radial).real[:, None]
+            arcs = arcs + (self.pattern.radius * draws.real(self.turn))[:, None]
+        outward = draws.radials(self.pattern) + draws.real(self.pattern.radial)[:, None]
         there = np.exp(1j * teeth.angles(self.pattern))[None, :]
         return np.asarray(draws.account(self.offset)[:, None] + (outward + 1j * arcs) * there)
 
@@ -112,7 +112,7 @@ class HoleChord:
     def sample(self, draws: Draws) -> Reals:
         n = self.pattern.count
         arcs = draws.arcs(self.pattern) * self.pattern.turn
-        outward = draws.radials(self.pattern) + draws.account(self.pattern.radial).real[:, None]
+        outward = draws.radials(self.pattern) + draws.real(self.pattern.radial)[:, None]
         step = np.roll(arcs, -1, axis=1) - arcs
         both = np.roll(outward, -1, axis=1) + outward
         return np.asarray(np.abs(step * math.cos(math.pi / n) + both * math.sin(math.pi / n)).max(axis=1))
@@ -141,5 +141,5 @@ class PitchCircle:
         return tuple(dict.fromkeys((*self.pattern.radial.undetermined(), *mine)))
 
     def sample(self, draws: Draws) -> Reals:
-        outward = draws.radials(self.pattern).mean(axis=1) + draws.account(self.pattern.radial).real
+        outward = draws.radials(self.pattern).mean(axis=1) + draws.real(self.pattern.radial)
         return np.asarray(2.0 * outward)

@@ -180,13 +180,36 @@ def high_point(key: str, *, face: State, lean: Account, radius: float, op: int |
     return Cause(key, "high-point", op, mode="derived", of=(face.lean - lean) * radius)
 
 
-def clocked(face: State, placing_axis: Account, *, at: float, radius: float) -> Account:
-    """Angle of the machine's zero found by touching a feature (keyway, tooth gap) at direction `at`, radius [mm].
+def clocked(face: State, pattern: Pattern, placing_axis: Account, *, number: int) -> Account:
+    """Angle of the machine's zero found by touching a feature (keyway, tooth gap, hole), place `number` of its pattern.
 
-    k = k_F + Im((axis_F - C)(z_F) exp(-i theta_F)) / rho_F [rad].  Source: derived here (tangential shift over radius).
+    k = k_F + Im((axis_F - C)(z_F) exp(-i theta_F)) / rho_F + Delta_F [rad], Delta_F the division error of that place.
+    Source: derived here (tangential shift over radius).
     """
     shift = face.offset - placing_axis
-    return face.clock + shift.along(1j * cmath.exp(1j * at)) * (1.0 / radius)
+    across = shift.along(1j * cmath.exp(1j * pattern.angle(number)))
+    return face.clock + across * (1.0 / pattern.radius) + index_error(pattern, number)
+
+
+def index_error(pattern: Pattern, number: int) -> Account:
+    """Division error of one place, counter-clockwise in the part frame [rad]: what it hands on when it clocks a part.
+
+    A scatter is drawn anew for that place, within the same bound.  Source: derived here.
+    """
+    j = number - 1
+    total = real(pattern.rounding[j] if pattern.rounding else 0.0)
+    for periodic in pattern.periodic:
+        total += Account.of(periodic.cause).along(cmath.exp(1j * periodic.harmonic * cmath.tau * j / pattern.count))
+    for scatter in pattern.scatter:
+        if scatter.along == "radial":
+            continue
+        cause = scatter.cause
+        if cause.law != "undetermined":
+            cause = replace(cause, key=f"{cause.key}, place {number}", law="length", high=scatter.bound)
+        total += Account.of(cause).along(1.0 if scatter.along == "angle" else 1.0 / pattern.radius)
+    for drift in pattern.drift:
+        total += Account.of(drift).along(j / (pattern.count - 1) if pattern.count > 1 else 0.0)
+    return total * float(pattern.turn)
 
 
 def cut(

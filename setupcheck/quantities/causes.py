@@ -63,11 +63,14 @@ def stated_direction(high_at: str | None) -> Towards:
         return Towards()
 
 
-def vector_error(given: Deviation | None, entry: Entry, *, scale: float, towards: Towards, turned: Turned) -> Account:
+def vector_error(
+    given: Deviation | None, entry: Entry, *, scale: float, towards: Towards, turned: Turned, lean: bool = False
+) -> Account:
     """An eccentricity or lean from an indicator reading.
 
     given    the entry, None where the planner wrote none (undetermined)
     scale    from the reading to the error, signed: +1/2 (outside), -1/2 (bore), -+1/across (face to +z / -z)
+    lean     the error is a slope: the same machine leans a part turned end for end the other way
     Laws: bound only: uniform over the disc; measured without direction: a ring; with direction: a vector.
     """
     if given is None:
@@ -96,7 +99,8 @@ def vector_error(given: Deviation | None, entry: Entry, *, scale: float, towards
         size = given.measured if given.measured is not None else given.at_most if given.at_most is not None else 0.0
         said = f"{entry.what.replace('_', ' ').replace('runout', 'run-out')} {show(size, 'um', 3).replace('.000', '')}"
         shared = replace(cause, key=f"{given.device}, mark kept: {said}")
-        return turned.to_part(Account.of(shared))
+        seen = turned.to_part(Account.of(shared))
+        return seen * float(turned.sg) if lean else seen
     return Account.of(cause)
 
 
@@ -110,7 +114,8 @@ def face_lean(
     given: Deviation | None, entry: Entry, *, across: float, facing: int, towards: Towards, turned: Turned
 ) -> Account:
     """Lean of a face from its run-out read across a circle: -(FIM/across) to the high spot when it looks to +z."""
-    return vector_error(given, entry, scale=-facing * face_reading_to_lean(1.0, across), towards=towards, turned=turned)
+    scale = -facing * face_reading_to_lean(1.0, across)
+    return vector_error(given, entry, scale=scale, towards=towards, turned=turned, lean=True)
 
 
 def length_error(given: Deviation | None, entry: Entry) -> Account:

@@ -40,8 +40,18 @@ class Held:
     def path(self, step: str) -> str:
         return f"setups.{self.op}.hold.{step}"
 
-    def turned(self, centre: Centre | None) -> Turned:
-        return Turned(self.sg, (centre.turned or 0.0) if centre is not None else 0.0)
+    def turned(self, centre: Centre | None = None) -> Turned:
+        """How the body lies in the machine; what `centre` (the first plane of the hold) says holds for the whole part."""
+        first = self.setup.hold.centre if self.setup.hold is not None else None
+        stated = next((c.turned for c in (centre, first) if c is not None and c.turned is not None), 0.0)
+        return Turned(self.sg, stated - self.sg * (self.floor.mark(self.part) or 0.0))
+
+    def of_part(self, angle: float) -> Towards:
+        """A direction counted from the held part's own mark, in the frame of its body."""
+        mark = self.floor.mark(self.part)
+        if mark is None:
+            return Towards()
+        return Towards(self.floor.sense(self.part) * angle + mark, why="known")
 
     def ref(self, text: str) -> Ref:
         own = self.setup.part or (self.part if "." not in text and text.partition("@")[0] in self._own() else None)
@@ -99,7 +109,7 @@ def direction(held: Held, given: Deviation | None, path: str, device: Device) ->
         return Towards()
     text = given.high_at.strip()
     if text == "mark":
-        return Towards(0.0, why="known")
+        return held.of_part(0.0)
     named = re.fullmatch(r"(tooth|gap|hole|jaw)\s+(\d+)", text)
     if named and named[1] == "jaw":
         if given.mark != "kept" or not device.jaws:
@@ -108,7 +118,7 @@ def direction(held: Held, given: Deviation | None, path: str, device: Device) ->
     if named:
         return Towards(_place_angle(held, "holes" if named[1] == "hole" else "teeth", int(named[2]), path), why="known")
     try:
-        return Towards(angle(text), why="known")
+        return held.of_part(angle(text))
     except NotationError:
         pass
     state = held.body.now(Ref(held.part, text)) if text in held.floor.loaded.surfaces()[held.part] else None
@@ -279,7 +289,7 @@ def seating(held: Held, square: Square, face: State) -> Account:
     towards = direction(held, square.face_runout, f"{path}.face_runout", DEVICES["faceplate"])
     held.floor.directions[f"{held.op}/square"] = towards.why
     total = face_lean(
-        square.face_runout, entry, across=across, facing=face.facing or 1, towards=towards, turned=held.turned(None)
+        square.face_runout, entry, across=across, facing=face.facing or 1, towards=towards, turned=held.turned()
     )
     if square.chip is not None:
         total += Account.of(
@@ -330,8 +340,7 @@ def contact(held: Held, stop: Stop, face: State, lean: Account, path: str) -> Ac
                 )
             ).along(1)
         where = Account(stop.radius * cmath.exp(1j * stop.direction))
-        centre = held.setup.hold.centre if held.setup.hold is not None else None
-        return route.touched_height(face, lean, point=held.turned(centre).to_part(where).constant, ring=None)
+        return route.touched_height(face, lean, point=held.turned().to_part(where).constant, ring=None)
     if square is not None and held.ref(square.on) == held.ref(stop.on):
         return face.axial
     radius = stop.radius if stop.radius is not None else (face.diameter or 0.0) / 2.0
@@ -359,9 +368,9 @@ def _clock(held: Held, clock: Clock | None, offset: Account, lean: Account) -> A
         return Account.of(
             Cause(f"op {op}: where the part is clocked", "undetermined", op, missing=held.path("clock.on"))
         ).along(1)
-    at = state.pattern.angle(min(clock.number, state.pattern.count))
     error = length_error(
         clock.error, Entry(f"op {op}, clocked on {clock.on}", op, f"{held.path('clock')}.error", "clock")
     )
-    found = route.clocked(state, offset + lean * state.z, at=at, radius=state.pattern.radius)
+    number = min(clock.number, state.pattern.count)
+    found = route.clocked(state, state.pattern, offset + lean * state.z, number=number)
     return found - error * (held.sg / state.pattern.radius)

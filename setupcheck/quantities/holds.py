@@ -1,11 +1,9 @@
-"""Facts and numbers of holds, dividing methods and the place, for the rules that look at the route itself. mm, rad."""
+"""Facts and numbers of holds, machines and the place, for the rules that look at the route itself. mm, rad."""
 
 from __future__ import annotations
 
 from setupcheck.jobfile.setups import Setup
-from setupcheck.ledger.teeth import folded
 from setupcheck.quantities.book import Open
-from setupcheck.quantities.dividing import holes_left_over, rounded_settings
 from setupcheck.quantities.judged import Result
 from setupcheck.quantities.route import machine_of
 from setupcheck.quantities.scopes import HoldEntry
@@ -113,79 +111,6 @@ def machine_error_stated(floor: Floor, setup: Setup) -> str | Open | None:
     if given is not None and (given.at_most is not None or given.measured is not None):
         return "stated"
     return "typical" if typical(machine.kind, "axis") is not None else Open((f"machines.{name}.axis_runout",))
-
-
-def _divided(floor: Floor, setup: Setup) -> tuple[str, int, int | None] | None:
-    """(surface, count, worm ratio) of what a setup divides; None where it divides nothing."""
-    for name in setup.cut:
-        ref = floor.loaded.ref(name, setup.part)
-        node = floor.loaded.job.parts[ref.part].surfaces[ref.surface]
-        count = getattr(node, "count", 1)
-        if count > 1:
-            _, machine = machine_of(floor.loaded, setup)
-            return name, count, machine.worm_ratio if machine is not None else None
-    return None
-
-
-def left_over(floor: Floor, setup: Setup) -> float | Open | None:
-    """Part of a hole left over by one step on the chosen circle, 0 where it closes. Source: exact fractions.
-
-    turns = ratio / count; holes = turns x circle; left over = distance to the next whole hole.
-    """
-    found = _divided(floor, setup)
-    if found is None or setup.divide is None or setup.divide.by != "hole-circle":
-        return None
-    _, count, ratio = found
-    missing = tuple(
-        path
-        for value, path in (
-            (setup.divide.circle, f"setups.{setup.op}.divide.circle"),
-            (ratio, f"machines.{setup.machine}.worm_ratio"),
-        )
-        if value is None
-    )
-    if missing:
-        return Open(missing)
-    assert ratio is not None and setup.divide.circle is not None
-    return holes_left_over(ratio, count, setup.divide.circle)
-
-
-def folded_harmonic(floor: Floor, setup: Setup) -> float | None:
-    """min(N mod z, z - N mod z): waves round the work left by an error that comes once per crank turn.
-
-    None where the head has no such error stated, or where it comes alike at every tooth (0 waves).
-    Source: aliasing, derived here; N = 40, z = 39 or 41 gives 1.
-    """
-    found = _divided(floor, setup)
-    worm = setup.divide.worm if setup.divide is not None else None
-    if found is None or worm is None or not worm.once_per_crank or found[2] is None:
-        return None
-    waves = folded(found[2], found[1])
-    return float(waves) if waves else None
-
-
-def step_error(floor: Floor, setup: Setup) -> float | None:
-    """Largest error of a setting rounded to the readout's step [rad]; absolute angles, so nothing adds up. Source: arithmetic."""
-    found = _divided(floor, setup)
-    if found is None or setup.divide is None or not setup.divide.step:
-        return None
-    return max(abs(e) for e in rounded_settings(found[1], setup.divide.step))
-
-
-def setting_error(setup: Setup) -> float | None:
-    """Stated error of one setting [rad]. Source: the job file."""
-    return setup.divide.setting if setup.divide is not None else None
-
-
-def division_stated(floor: Floor, setup: Setup) -> str | Open | None:
-    """stated where the dividing device's own error is; Open with the key to fill. Source: the job file."""
-    if _divided(floor, setup) is None:
-        return None
-    if setup.divide is None:
-        return Open((f"setups.{setup.op}.divide",))
-    if setup.divide.wheel is None and setup.divide.setting is None:
-        return Open((f"setups.{setup.op}.divide.wheel",))
-    return "stated"
 
 
 def nominal_gap(floor: Floor) -> float | Open | None:

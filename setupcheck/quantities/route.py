@@ -72,7 +72,8 @@ def machine_of(loaded: LoadedJob, setup: Setup) -> tuple[str | None, Machine | N
 
 def _hold_and_cut(floor: Floor, setup: Setup) -> None:
     first = floor.loaded.ref(next(iter(setup.cut)), setup.part)
-    held = Held(floor, setup, floor.body(first.part), first.part)
+    part = setup.part if setup.part is not None else first.part
+    held = Held(floor, setup, floor.body(part), part)
     if setup.keeps is not None:
         placing = floor.placings.get(setup.keeps)
         if placing is None:
@@ -218,7 +219,8 @@ def _join(floor: Floor, setup: Setup, join: Join) -> None:
     if face is not None and shoulder is not None:
         sense = 1 if face.facing == -shoulder.facing else -1
         shift = face.z + face.facing * middle - sense * shoulder.z
-    seat = Seat(sense, shift, join.mounted_at)
+    turn = _mounting(floor, join, outer.part, inner.part, sense)
+    seat = Seat(sense, shift, turn)
     turned = Cause(
         f"op {op}, angle at which {outer.part} was put on {inner.part}", "ring", op, high=1.0, mode="derived"
     )
@@ -230,7 +232,7 @@ def _join(floor: Floor, setup: Setup, join: Join) -> None:
                     f"op {op}: where the parts are clocked", "undetermined", op, missing=f"setups.{op}.join.mounted_at"
                 )
             ).along(1)
-            if join.mounted_at is None
+            if turn is None
             else Account()
         )
         return route.joined(state, seat, offset=offset, lean=lean, axial=axial, clock=clock, unknown=turned)
@@ -282,9 +284,22 @@ def _join(floor: Floor, setup: Setup, join: Join) -> None:
     for name in (name for name, old in floor.bodies.items() if old is other):
         own, way = floor.frames.get(name, (1, 0.0))
         floor.frames[name] = (sense * own, sense * way + shift)
+        mark = floor.mark(name)
+        floor.marks[name] = sense * mark + turn if mark is not None and turn is not None else None
     for name, old in floor.bodies.items():
         if old is other:
             floor.bodies[name] = body
+
+
+def _mounting(floor: Floor, join: Join, outer: str, inner: str, sense: int) -> float | None:
+    """Angle by which the inner body's directions are turned into the outer's, after `sense` [rad]; None if not known.
+
+    The outer part's mark stands at `mounted_at` of the inner part.  Source: geometry, derived here.
+    """
+    theirs, ours = floor.mark(inner), floor.mark(outer)
+    if join.mounted_at is None or theirs is None or ours is None:
+        return None
+    return ours - sense * (floor.sense(inner) * join.mounted_at + theirs)
 
 
 def _contact_faces(

@@ -54,6 +54,7 @@ class Floor:
     stock: dict[str, tuple[State, State]] = field(default_factory=dict)
     removed: dict[tuple[str, str], int] = field(default_factory=dict)
     frames: dict[str, tuple[int, float]] = field(default_factory=dict)
+    marks: dict[str, float | None] = field(default_factory=dict)
 
     def z(self, part: str, own: float) -> float:
         """A height in a part's own coordinates, in the frame of the body it belongs to by now [mm]."""
@@ -63,6 +64,10 @@ class Floor:
     def sense(self, part: str) -> int:
         """+1 where a part's own +z is the +z of its body, -1 where it was joined the other way round."""
         return self.frames.get(part, (1, 0.0))[0]
+
+    def mark(self, part: str) -> float | None:
+        """Where a part's mark stands in its body's frame [rad]; None where nobody recorded how it was mounted."""
+        return self.marks.get(part, 0.0)
 
     def body(self, part: str) -> Body:
         return self.bodies[part]

@@ -138,36 +138,35 @@ def _teeth(floor: Floor, stack: Stack) -> Built | Open:
         if stack.require.on_diameter is None:
             return Open((f"require.{stack.index}.on_diameter",))
         factor = stack.require.on_diameter / (2.0 * pattern.radius)
-    offset = _as_meshed(floor, g, r)
-    if isinstance(offset, Open):
-        return offset
+    oblique = _oblique(floor, g, r)
+    if isinstance(oblique, Open):
+        return oblique
     figure = figures.Tooth(
-        offset,
+        g.offset - r.axis_at(g.z),
         pattern,
         flank=flank,
         stepwise=what == "single-pitch",
         factor=factor,
         driven=what in ("index-range", "index-within", "on-workpiece"),
+        oblique=oblique,
     )
     return Built(figure, _second_order(lean=g.lean - r.lean, lever=abs(g.z - r.z)))
 
 
-def _as_meshed(floor: Floor, g: State, r: State) -> Account | Open:
-    """Eccentricity of a tooth ring, with what the wobble adds where the gaps run at the worm's lead angle."""
-    offset, mesh, worm = g.offset - r.axis_at(g.z), floor.loaded.job.mesh, floor.loaded.job.worm
+def _oblique(floor: Floor, g: State, r: State) -> Account | Open:
+    """What the wobble of a wheel adds to its pitch where the gaps run at the worm's lead angle."""
+    mesh, worm = floor.loaded.job.mesh, floor.loaded.job.worm
     if mesh is None or worm is None or g.pattern is None:
-        return offset
+        return Account()
     wheel = floor.loaded.ref(mesh.wheel)
     if (wheel.part, wheel.surface) != (g.part, g.name):
-        return offset
+        return Account()
     missing = tuple(f"worm.{k}" for k in ("axial_module", "reference_diameter") if getattr(worm, k) is None)
     if missing:
         return Open(missing)
     assert worm.axial_module is not None and worm.reference_diameter is not None
     lead_angle = math.atan(worm.starts * worm.axial_module / worm.reference_diameter)
-    return teeth.oblique(
-        offset, g.lean - r.lean, radius=g.pattern.radius, lead_angle=lead_angle, right_hand=worm.hand != "left"
-    )
+    return teeth.oblique(g.lean - r.lean, g.pattern, lead_angle=lead_angle, right_hand=worm.hand != "left")
 
 
 def _backlash_swing(floor: Floor, stack: Stack) -> Built | Open:
@@ -223,7 +222,7 @@ def _holes(floor: Floor, stack: Stack) -> Built | Open:
 def _angle_about(key: State, axis: State) -> Account:
     """Angle of a clocking feature about another axis [rad]: its own, and its tangential shift over its radius."""
     assert key.pattern is not None
-    return route.clocked(key, axis.axis_at(key.z), at=key.pattern.angle(1), radius=key.pattern.radius)
+    return route.clocked(key, key.pattern, axis.axis_at(key.z), number=1)
 
 
 def _mid_plane(floor: Floor, stack: Stack) -> Built | Open:

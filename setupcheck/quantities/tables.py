@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from setupcheck.quantities import holds, judged
 from setupcheck.quantities.book import Quantity
+from setupcheck.quantities.division import DIVIDE
 
 ROUTE = (
     Quantity("route.floor", "job", "", 0, judged.floor, {"floor": ":"}, "every surface with what it inherits"),
@@ -188,54 +189,6 @@ ALLOW = (
     ),
     Quantity(
         "allow.finishing_cut", "cut", "mm", 3, judged.finishing_cut, {"entry": ":"}, "thinnest cut the tool still takes"
-    ),
-)
-
-DIVIDE = (
-    Quantity(
-        "divide.left_over",
-        "setup",
-        "1",
-        3,
-        holds.left_over,
-        {"floor": "route.floor", "setup": ":"},
-        "part of a hole that one step leaves over",
-    ),
-    Quantity(
-        "divide.folded_harmonic",
-        "setup",
-        "1",
-        0,
-        holds.folded_harmonic,
-        {"floor": "route.floor", "setup": ":"},
-        "waves round the work that the head's once-per-crank error leaves",
-    ),
-    Quantity(
-        "divide.step_error",
-        "setup",
-        "arcsec",
-        2,
-        holds.step_error,
-        {"floor": "route.floor", "setup": ":"},
-        "largest error of a setting rounded to the readout's step",
-    ),
-    Quantity(
-        "divide.setting_error",
-        "setup",
-        "arcsec",
-        2,
-        holds.setting_error,
-        {"setup": ":"},
-        "error of one setting as stated",
-    ),
-    Quantity(
-        "divide.error_stated",
-        "setup",
-        "",
-        0,
-        holds.division_stated,
-        {"floor": "route.floor", "setup": ":"},
-        "whether the dividing method's errors are stated",
     ),
 )
 

@@ -21,6 +21,9 @@ METRIC = {shown: metric for metric, shown in INCH.items()}
 DIGITS = 12
 """Significant digits of every number, so that the last bits of a sum cannot change the bytes. Source: our choice."""
 
+DRAWN_DIGITS = 5
+"""Significant digits of drawn values. Source: our choice."""
+
 Value = float | int | str | None
 
 
@@ -78,6 +81,11 @@ def _number(value: float) -> float:
     return float(f"{value:.{DIGITS}g}") + 0.0 if math.isfinite(value) else 0.0
 
 
+def _settled(value: float) -> float:
+    """A drawn value at the digits that single-precision draws settle on every machine; its sampling error is far larger."""
+    return float(f"{value:.{DRAWN_DIGITS}g}")
+
+
 def _shown(value: float | None, unit: str) -> float | None:
     if value is None:
         return None
@@ -132,7 +140,7 @@ def _combined(result: Result, unit: str) -> dict[str, object]:
     return {
         "worst": _ends(c.worst.low, c.worst.high, unit, signed=signed),
         "rss": _ends(c.rss.low, c.rss.high, unit, signed=signed),
-        "likely": _ends(c.likely.low, c.likely.high, unit, signed=signed),
+        "likely": _ends(_settled(c.likely.low), _settled(c.likely.high), unit, signed=signed),
         "chance": _number(c.chance) if c.chance is not None else None,
         "chance_error": _number(c.chance_error) if c.chance_error is not None else None,
         "causes": [

@@ -12,7 +12,7 @@ from setupcheck.notation import nearest, show
 from setupcheck.quantities.book import Answer, Book, Known, Open, Quantity, Scope
 from setupcheck.quantities.judged import Result
 from setupcheck.quantities.scopes import stack_of
-from setupcheck.report.wording import clean, finer, wrap
+from setupcheck.report.wording import WIDTH, clean, finer, wrap
 
 LAWS = {
     "disc": "anywhere within its bound",
@@ -27,6 +27,9 @@ LAWS = {
     "high-point": "follows the lean",
     "undetermined": "not known",
 }
+
+
+RECORD = "(no single number)"
 
 
 def find(book: Book, asked: str) -> tuple[Quantity, list[Scope]]:
@@ -58,8 +61,9 @@ def as_working(loaded: LoadedJob, book: Book, asked: str) -> str:
     Raises: SetupcheckError for an unknown quantity or instance.
     """
     quantity, scopes = find(book, asked)
+    applying = [s for s in scopes if book.get(quantity.name, s) is not None] or scopes[:1]
     lines: list[str] = []
-    for scope in scopes:
+    for scope in applying:
         lines += [*_working(loaded, book, quantity, scope), ""]
     return "\n".join(lines).rstrip() + "\n"
 
@@ -71,7 +75,7 @@ def _answer(book: Book, name: str, scope: Scope, answer: Answer) -> str:
         return "cannot tell: " + (answer.because or "fill " + ", ".join(answer.missing))
     if isinstance(answer.value, float | int) and not isinstance(answer.value, bool):
         return show(float(answer.value), book.unit(name, scope) or "1", book.digits(name, scope))
-    return clean(str(answer.value)) if isinstance(answer.value, str) else "(a record, see below)"
+    return clean(str(answer.value)) if isinstance(answer.value, str) else RECORD
 
 
 def _working(loaded: LoadedJob, book: Book, quantity: Quantity, scope: Scope) -> Iterator[str]:
@@ -81,9 +85,9 @@ def _working(loaded: LoadedJob, book: Book, quantity: Quantity, scope: Scope) ->
     yield from wrap(
         f"{quantity.says}" + (f"; asked in line {scope.line}" if scope.line > 1 else ""), first="  ", rest="  "
     )
-    yield from _formula(quantity)
+    yield from _formula(quantity.of)
     for argument, name in quantity.inputs.items():
-        yield from _input(book, scope, argument, name)
+        yield from _input(loaded, book, scope, argument, name)
     if isinstance(answer, Known) and answer.rests_on:
         yield from wrap("rests on typical values: " + ", ".join(sorted(answer.rests_on)), first="  ", rest="    ")
     result = book.get("stack.combined", scope) if scope.kind == "stack" else None
@@ -91,31 +95,42 @@ def _working(loaded: LoadedJob, book: Book, quantity: Quantity, scope: Scope) ->
         yield from _causes(loaded, book, result.value, scope)
 
 
-def _formula(quantity: Quantity) -> Iterator[str]:
+def _formula(of: object) -> Iterator[str]:
     """Formula and source as the function itself states them."""
-    text = (inspect.getdoc(quantity.of) or "").partition(">>>")[0]
+    text = (inspect.getdoc(of) or "").partition(">>>")[0]
     for paragraph in filter(None, (line.strip() for line in text.splitlines())):
         yield from wrap(paragraph, first="  ", rest="    ")
 
 
-def _input(book: Book, scope: Scope, argument: str, name: str) -> Iterator[str]:
+def _input(loaded: LoadedJob, book: Book, scope: Scope, argument: str, name: str) -> Iterator[str]:
+    """One input: its value, and where the job file says it."""
+    if name.startswith("@") or name == "route.floor":
+        return
     if name.startswith(("each ", "known ")):
         yield from wrap(f"{argument}: {name}", first="    ", rest="      ")
         return
     answer = book.get(name, scope)
-    if name == ":" or name.startswith("@"):
-        line = f" (line {scope.line})" if scope.line > 1 else ""
-        yield from wrap(f"{argument}: {scope.path or 'the job'}{line}", first="    ", rest="      ")
+    if name.startswith(":"):
+        line = loaded.line(".".join(x for x in (scope.path, name[1:]) if x))
+        if line > 1:
+            text = clean(loaded.tree.lines[line - 1])
+            shown = f"    line {line} | {text}"
+            yield shown if len(shown) <= WIDTH else shown[: WIDTH - 2] + " …"
         return
-    shown = (
-        _answer(book, name, scope, answer) if not name.startswith(":") else str(getattr(answer, "value", "not stated"))
-    )
-    yield from wrap(f"{argument}: {name} = {shown}", first="    ", rest="      ")
+    home = book.home(name, scope)
+    shown = _answer(book, name, home if home is not None else scope, answer)
+    if shown != RECORD:
+        line = home.line if home is not None and home.kind != "job" else 0
+        shown += f" (line {line})" if line else ""
+        yield from wrap(f"{argument}: {name} = {shown}", first="    ", rest="      ")
 
 
 def _causes(loaded: LoadedJob, book: Book, result: Result, scope: Scope) -> Iterator[str]:
     """Every cause with its bound, what it does to the figure, and the line it was stated in."""
     stack = stack_of(scope)
+    yield f"  {stack.require.what}:"
+    for line in _formula(type(result.figure)):
+        yield f"  {line}"
     unit, digits = finer(stack.unit, inches=book.inches)
     yield "  causes, biggest first:"
     for share in result.combined.shares:

@@ -5,7 +5,6 @@
 """
 
 from setupcheck.rulebook.cautions import TO_CHECK, TO_MIND
-from setupcheck.rulebook.describe import describe, page
 from setupcheck.rulebook.evaluate import evaluate, ordered, verdict
 from setupcheck.rulebook.facts import FACTS
 from setupcheck.rulebook.house import House, HouseLimit, load_house
@@ -58,13 +57,11 @@ __all__ = [
     "Unknown",
     "Verdict",
     "Waiver",
-    "describe",
     "evaluate",
     "judge",
     "judge_word",
     "load_house",
     "load_rulebook",
     "ordered",
-    "page",
     "verdict",
 ]

@@ -103,7 +103,17 @@ def many_jobs() -> None:
 
 
 if __name__ == "__main__":
-    ratio("setupcheck --help / import typer", process("-m", "setupcheck", "--help"), process("-c", "import typer"), "under 1.3")
-    ratio("setupcheck review / the five imports", process("-m", "setupcheck", "review", str(JOB)), process("-c", FIVE), "under 2")
+    ratio(
+        "setupcheck --help / import typer",
+        process("-m", "setupcheck", "--help"),
+        process("-c", "import typer"),
+        "under 1.3",
+    )
+    ratio(
+        "setupcheck review / the five imports",
+        process("-m", "setupcheck", "review", str(JOB)),
+        process("-c", FIVE),
+        "under 2",
+    )
     random_numbers()
     many_jobs()

@@ -3,8 +3,9 @@
 9.2.2 (table 2)  four normal inputs, standard deviation 1       u = 2.00, 95 % interval [-3.92, 3.92]
 9.2.3 (table 3)  four rectangular inputs, standard deviation 1  u = 2.00, 95 % interval [-3.88, 3.88]
 9.2.4 (table 4)  rectangular, standard deviations 1, 1, 1, 10   u = 10.1, 95 % interval [-17.0, 17.0]
+9.3 (mass calibration)  first order u = 0.0539 mg, Monte Carlo 0.0754 mg, shortest 95 % [1.0834, 1.3825] mg
 9.4              Y = X1^2 + X2^2 with both estimates zero       first order gives 0 +- 0; Monte Carlo does not
-Tables 2 and 3 as quoted in the example tests of a public uncertainty library; table 4 and 9.4 from memory. All were
+Tables 2 and 3 as quoted in the example tests of a public uncertainty library; table 4, 9.3 and 9.4 from memory. All were
 recomputed here by quadrature.
 
 The inputs are spacers between two faces. The ledger cuts normal laws at three standard deviations, which takes 1.34 % of
@@ -146,6 +147,36 @@ def test_the_chance_of_keeping_the_published_interval_is_95_percent() -> None:
         assert chance is not None and error is not None
         assert 0.95 == pytest.approx(chance, abs=share_error(0.95) + 0.002), length
         assert math.sqrt(0.95 * 0.05 / TRIALS) == pytest.approx(error, rel=0.05)
+
+
+# -- 9.3: a product whose first-order sensitivity is zero ---------------------------------------------------------------
+
+
+def test_the_buoyancy_of_a_weight_is_seen_by_the_draws_and_not_by_first_order() -> None:
+    # JCGM 101:2008 9.3 (as remembered): deviation from 100 g of a weight compared in air, in mg
+    draws = Draws(MANY)
+
+    def drawn(name: str, law: str, at: float, size: float) -> np.ndarray:
+        sizes = {"spread": size} if law == "gauss" else {"high": size}
+        return draws.cause(Cause(f"9.3, {name}", law, mean=complex(at), **sizes)).real
+
+    reference, difference = drawn("m_Rc", "gauss", 100_000.0, 0.050), drawn("dm", "gauss", 1.234, 0.020)
+    air = drawn("air", "length", 1.20, 0.10)
+    weight, standard = drawn("rho_W", "length", 8000.0, 1000.0), drawn("rho_R", "length", 8000.0, 50.0)
+    deviation = (reference + difference) * (1.0 + (air - 1.2) * (1.0 / weight - 1.0 / standard)) - 100_000.0
+    first_order = math.hypot(0.050, 0.020)
+    assert 0.0539 == pytest.approx(first_order, abs=0.00005)
+    buoyancy = 0.0754**2 - first_order**2
+    as_cut = math.sqrt((first_order * cut_deviation()) ** 2 + buoyancy)  # 0.0749: only the normal inputs are cut
+    assert as_cut == pytest.approx(float(deviation.std()), abs=spread_error(as_cut, MANY) + 0.0001)
+    assert 0.0754 == pytest.approx(float(deviation.std()), rel=CUT)
+    # the print's interval is 0.2991 mg wide and holds 95 %; where the shortest one begins is a matter of luck
+    share = float(np.mean((deviation >= 1.0834) & (deviation <= 1.3825)))
+    assert 0.95 == pytest.approx(share, abs=share_error(0.95, MANY) + 0.004)
+    values, inside = np.sort(deviation), round(0.95 * MANY)
+    width = float((values[inside:] - values[:-inside]).min())
+    assert 1.3825 - 1.0834 == pytest.approx(width, rel=CUT)
+    assert 2.0 * 1.96 * first_order < 0.75 * width  # first order claims [1.1285, 1.3395]
 
 
 # -- 9.4: the squared length of a vector whose best estimate is zero ----------------------------------------------------

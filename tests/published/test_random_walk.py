@@ -31,7 +31,7 @@ def rechucked(holdings: int, how: str, *, limit: float = 2.0, confidence: float 
     how  the entries of `centre` that say how true each re-holding is;  limit  full indicator movement [um]
     """
     lands = "\n".join(
-        f"      land{i}: {{kind: cylinder, diameter: {60 - 5 * i}, from: {10 * i}, to: {10 * i + 10}}}"
+        f"      land{i}: {{kind: cylinder, diameter: {100 - 5 * i}, from: {10 * i}, to: {10 * i + 10}}}"
         for i in range(holdings + 1)
     )
     setups = "\n".join(
@@ -55,8 +55,8 @@ machines: {{lathe-A: {{kind: lathe, axis_runout: 0 um}}}}
 parts:
   plug:
     surfaces:
-      bar: {{kind: cylinder, diameter: 70, from: -60, to: 0, made: stock}}
-      end: {{kind: face, at: 0, facing: -z, diameter: 60}}
+      bar: {{kind: cylinder, diameter: 110, from: -60, to: 0, made: stock}}
+      end: {{kind: face, at: 0, facing: -z, diameter: 100}}
 {lands}
 setups:
   - op: 1
@@ -166,7 +166,7 @@ def test_play_that_is_pushed_to_the_wall_is_a_ring_and_loose_play_a_disc() -> No
 
 def test_many_steps_follow_rayleigh() -> None:
     # Rayleigh: percentiles 1.1774, 2.1460, 2.4477, 3.0349 times sqrt(sum e^2 / 2); 16 steps stay within 0.006 of it
-    radii = sampled(rechucked(16, "by: indicator, runout: {measured: 0.5 um}").replace("70", "170")) / FIM
+    radii = sampled(rechucked(16, "by: indicator, runout: {measured: 0.5 um}")) / FIM
     s = math.sqrt(16 * 0.25**2 / 2.0)
     for p, published in ((0.50, 1.1774), (0.90, 2.1460), (0.95, 2.4477), (0.99, 3.0349)):
         assert p == pytest.approx(float(np.mean(radii <= published * s)), abs=share_error(p) + 0.006)

@@ -7,7 +7,8 @@ from pathlib import Path
 import pytest
 
 from setupcheck.errors import RuleBookError
-from setupcheck.rulebook import EVIDENCE, describe, load_rulebook, page
+from setupcheck.rulebook import EVIDENCE, load_rulebook
+from setupcheck.rulebook.describe import describe, page
 from setupcheck.rulebook.records import OfQuantity
 
 from .bookshelf import RULE, load

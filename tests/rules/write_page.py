@@ -4,7 +4,8 @@ from __future__ import annotations
 
 from pathlib import Path
 
-from setupcheck.rulebook import load_rulebook, page
+from setupcheck.rulebook import load_rulebook
+from setupcheck.rulebook.describe import page
 
 from .fakebook import QUANTITIES
 

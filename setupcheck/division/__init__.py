@@ -1,0 +1,1 @@
+"""Division: planning how the circle is divided. Angles rad; pure functions of numbers."""

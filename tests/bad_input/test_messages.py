@@ -1,0 +1,89 @@
+"""What a spoilt job file says: the whole message of each trap, all errors of a file in one run, in the order of lines."""
+
+from __future__ import annotations
+
+import pickle
+from pathlib import Path
+
+import pytest
+import yaml
+
+from setupcheck.errors import JobError
+from setupcheck.jobfile.reading import read_job_text
+from tests.bad_input.ring import RING, refused, spoilt, told
+
+TRAPS = yaml.safe_load((Path(__file__).parent / "traps.yaml").read_text("utf-8"))
+
+
+@pytest.mark.parametrize("trap", TRAPS, ids=[t["trap"].replace(" ", "-") for t in TRAPS])
+def test_a_spoilt_place_is_named_with_its_line_and_what_to_write(trap: dict[str, object]) -> None:
+    wrong = refused(spoilt(str(trap["in place of"]), str(trap["write"])))
+    assert trap["says"] == [told(problem) for problem in wrong.problems]
+
+
+def test_the_sound_job_itself_is_accepted() -> None:
+    assert read_job_text(RING, "job.yaml").job.title == "Ring gear blank"
+
+
+def test_a_message_shows_the_line_and_points_at_the_text() -> None:
+    expected = """\
+job.yaml:30:20  setups.20.hold.centre.on
+    30 |       centre: {on: boar, by: spigot, clearance: [1 um, 3 um], runout: 3 um}
+       |                    ^^^^
+  no surface is called 'boar'. Did you mean bar?"""
+    assert expected == str(refused(spoilt("on: bore, by", "on: boar, by")))
+
+
+def test_five_mistakes_in_different_places_are_told_in_one_run_and_in_the_order_of_lines() -> None:
+    text = RING
+    for old, new in (
+        ('at_most: 400"', "at_most: 400 um"),  # a limit in the wrong kind of unit
+        ("runout: 3 um", "runout: 2,5 um"),  # a decimal comma
+        ("machine: head-B", "machine: head-C"),  # an unknown name
+        ("worm_ratio: 40", "worm_ration: 40"),  # a mistyped key
+        ("diameter: 32 H7", "diameter: 55 H7"),  # a bore larger than the hub
+    ):
+        text = spoilt(old, new, text)
+    expected = [
+        (11, "parts.ring.surfaces.bore.diameter"),
+        (17, "machines.head-B.worm_ration"),
+        (27, "setups.20.machine"),
+        (30, "setups.20.hold.centre.runout"),
+        (37, "require[2].at_most"),
+    ]
+    assert expected == [(p.line, p.path) for p in refused(text).problems]
+
+
+def test_a_name_is_looked_up_even_where_values_of_the_same_entry_are_wrong() -> None:
+    text = spoilt("on: bore, by", "on: boar, by", spoilt("runout: 3 um", "runout: 3"))
+    assert [20, 71] == [p.column for p in refused(text).problems if p.line == 30]
+
+
+def test_sizes_are_told_in_the_units_of_the_file() -> None:
+    inches = RING.replace("units: mm", "units: in").replace("diameter: 32 H7", "diameter: 50")
+    assert [
+        "a bore of 50 in leaves nothing of hub, which is 50 in from 20 in to 30 in",
+    ] == [p.problem for p in refused(inches).problems]
+
+
+def test_a_mistake_in_the_units_of_the_file_is_told_once_and_not_at_every_size() -> None:
+    assert 1 == len(refused(spoilt("units: mm", "units: furlong")).problems)
+
+
+def test_more_than_fifty_mistakes_are_counted_and_not_all_printed() -> None:
+    setups = "".join(f"  - {{op: {op}, machine: nowhere-{op}}}\n" for op in range(30, 130))
+    said = str(refused(RING.replace("require:\n", setups + "require:\n")))
+    assert "and 150 more" == said.splitlines()[-1]
+
+
+def test_an_error_survives_the_way_from_one_process_to_another() -> None:
+    wrong = refused(spoilt("on: bore, by", "on: boar, by"))
+    again = pickle.loads(pickle.dumps(wrong))
+    assert isinstance(again, JobError)
+    assert str(wrong) == str(again)
+
+
+def test_a_long_text_is_quoted_short() -> None:
+    wrong = refused(spoilt("machine: head-B", f"machine: {'x' * 5000}"))
+    assert f"there is no machine '{'x' * 39}…'" == wrong.problems[0].problem
+    assert max(len(line) for line in str(wrong).splitlines()) < 200

@@ -1,0 +1,329 @@
+"""One route, walked and simulated: every asked figure from both, side by side. Lengths mm, angles as arcs on 100 or 50 mm."""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Iterator
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+from setupcheck.jobfile.names import Ref
+from setupcheck.jobfile.reading import read_job_text
+from setupcheck.ledger import teeth
+from setupcheck.ledger.account import Account
+from setupcheck.ledger.figures import Tooth
+from setupcheck.ledger.route import Pattern, State
+from setupcheck.quantities.book import Open
+from setupcheck.quantities.requirements import read_stack
+from setupcheck.quantities.route import walk
+from setupcheck.quantities.shop import Floor
+from setupcheck.quantities.stacks import Built, build
+
+from ..rigidbody import measure
+from ..rigidbody.machining import run
+from ..rigidbody.made import World
+from ..rigidbody.random_routes import SHARP
+from ..rigidbody.route import Question, Route
+from .as_job import AsJob, as_job
+from .sayable import Sayable, displaced
+from .told import Told, value
+
+Values = NDArray[np.float64] | NDArray[np.complex128]
+LEAN_ARM, ANGLE_ARM = 100.0, 50.0  # mm
+MATTERS = 1e-4  # mm: a figure that changes by more with what nobody stated is not determined
+
+
+@dataclass(frozen=True, eq=False, slots=True)
+class Asked:
+    """A figure: its name, the package's answer (None: open), and how to measure it on a simulated world."""
+
+    name: str
+    kind: str
+    predicted: Values | None
+    measured: Callable[[World], Values]
+
+
+@dataclass(frozen=True, eq=False, slots=True)
+class Compared:
+    """measured: as simulated; sharp: simulated with errors times SHARP and divided by it; elsewhere: with what is not
+    stated displaced."""
+
+    asked: Asked
+    measured: Values
+    sharp: Values
+    elsewhere: Values
+
+    @property
+    def undetermined(self) -> bool:
+        return largest(self.measured - self.elsewhere) > MATTERS
+
+
+def largest(values: Values) -> float:
+    return float(np.max(np.abs(values)))
+
+
+class Comparison:
+    """A route as a job, walked, with the questions of the route and the requirements that follow from them."""
+
+    def __init__(self, given: Sayable) -> None:
+        self.given, self.route = given, given.route
+        self.require = list(_requirements(given.route))
+        place = _place(given.route)
+        self.job: AsJob = as_job(given, self.require, place)
+        self.loaded = read_job_text(self.job.text, "random.yaml")
+        self.floor: Floor = walk(self.loaded)
+        self.told = Told(self.job.truth)
+
+    def state(self, name: str) -> State:
+        part, _, surface = name.partition(".")
+        state = self.floor.now(Ref(part, surface))
+        assert state is not None, name
+        return state
+
+    def frame(self, name: str) -> str:
+        return self.floor.body(name.partition(".")[0]).frame
+
+    def value(self, account: Account) -> complex | None:
+        return None if account.undetermined() else value(account, self.job.truth)
+
+    def asked(self) -> Iterator[Asked]:
+        for question in self.route.questions:
+            found = self._account(question)
+            if found is not None:
+                yield found
+            elif question.kind not in ("run-out", "face run-out"):
+                yield self._teeth(question)
+        for index, require in enumerate(self.require):
+            yield self._required(index, require)
+        yield from self._clocks()
+
+    def _account(self, q: Question) -> Asked | None:
+        if q.kind not in ("offset", "lean", "length"):
+            return None
+        g, r, frame = self.state(q.of), self.state(q.about), self.frame(q.of)
+        measured: Callable[[World], Values]
+        if q.kind == "offset":
+            found = self.value(g.offset - r.axis_at(g.z))
+            measured = lambda w: np.array([measure.offset(w, q.of, q.about, seen_from=frame)])  # noqa: E731
+        elif q.kind == "lean":
+            found = self.value((g.lean - r.lean) * LEAN_ARM)
+            measured = lambda w: LEAN_ARM * np.array([measure.lean(w, q.of, q.about, seen_from=frame)])  # noqa: E731
+        else:
+            found = self.value(g.axial - self.state(q.against).axial)
+
+            def measured(w: World) -> Values:
+                got = measure.length(w, q.of, q.against, q.about, seen_from=frame)
+                return np.array([got - measure.drawn_length(w, q.of, q.against, seen_from=frame)])
+
+        return Asked(f"{q}", q.kind, None if found is None else np.array([found]), measured)
+
+    def _teeth(self, q: Question) -> Asked:
+        """Arcs of all places, less their mean: the angle of a whole pattern is asked of pairs of patterns."""
+        g, r, frame = self.state(q.of), self.state(q.about), self.frame(q.of)
+        assert g.pattern is not None
+        predicted = self._arcs(q, g, r, g.pattern)
+        if predicted is not None:
+            predicted = predicted - np.mean(predicted)
+
+        def measured(w: World) -> Values:
+            got = _tooth_arcs(w, q, frame)
+            return got - np.mean(got)
+
+        return Asked(f"{q}", q.kind, predicted, measured)
+
+    def _arcs(self, q: Question, g: State, r: State, pattern: Pattern) -> NDArray[np.float64] | None:
+        """The package's arcs of one flank (or the axial places) of all gaps, None where they are open."""
+        at = np.exp(-1j * np.asarray(teeth.angles(pattern)))
+        if q.kind == "wobble":
+            lean = self.value(g.lean - r.lean)
+            return None if lean is None else -pattern.radius * np.real(lean * at)
+        figure = self._tooth_figure(q)
+        if figure is None:
+            return None
+        side = 0 if q.kind == "gaps" else 1 if q.kind.endswith(" ccw") else -1
+        driven = q.kind.startswith("index")
+        wave = figure.offset * teeth.flank_turn(pattern, side=side, driven=driven)
+        wave += figure.oblique * teeth.oblique_turn(pattern, side=side, driven=driven)
+        return np.imag(value(wave, self.job.truth) * at) + np.asarray(self.told.arcs(pattern)[0], dtype=float)
+
+    def _tooth_figure(self, q: Question) -> Tooth | None:
+        """The figure the package builds for the gap centres, None where it is open."""
+        wanted = ("gap-centre-pitch", q.of, q.about)
+        index = next(i for i, r in enumerate(self.require) if (r["what"], r["of"], r["about"]) == wanted)
+        found = build(self.floor, read_stack(self.floor, index))
+        return found.figure if isinstance(found, Built) and isinstance(found.figure, Tooth) else None
+
+    def _required(self, index: int, require: dict[str, object]) -> Asked:
+        built = build(self.floor, read_stack(self.floor, index))
+        predicted = None if isinstance(built, Open) else np.asarray(built.figure.sample(self.told), dtype=float)
+        what, of, about = str(require["what"]), str(require["of"]), str(require.get("about"))
+        frame = self.frame(of)
+        drawn = self.route.surface(of)
+        scale = ANGLE_ARM if what == "index-range" else 1.0
+        measured = _FIGURES[what](of, about, str(require.get("clock", "")), frame, drawn.radius)
+        return Asked(
+            f"require {what} of {of} about {about} {require.get('clock', '')}",
+            what,
+            None if predicted is None else predicted * scale,
+            measured,
+        )
+
+    def _clocks(self) -> Iterator[Asked]:
+        """Angle from one pattern to the other, as an arc on 50 mm: both as cut, each over its own mean."""
+        names = [n for n in ("wheel.teeth", "wheel.holes") if self.floor.now(Ref(*n.split("."))) is not None]
+        axis = next(iter(self.route.questions)).about
+        if len(names) < 2:
+            return
+        states = [self.state(n) for n in names]
+        found = self.value((states[0].clock - states[1].clock) * ANGLE_ARM)
+        frame = self.frame(names[0])
+        parts = [self._mean_division(s) for s in states]
+
+        def measured(w: World) -> Values:
+            means = [
+                float(np.mean(_middles(w, n, axis, frame))) / s.pattern.radius
+                for n, s in zip(names, states, strict=True)
+                if s.pattern is not None
+            ]
+            return np.array([(means[0] - means[1]) * ANGLE_ARM])
+
+        if found is not None:
+            found += (parts[0] - parts[1]) * ANGLE_ARM
+        yield Asked("clock of teeth and holes", "clock", None if found is None else np.array([found.real]), measured)
+
+    def _mean_division(self, state: State) -> float:
+        assert state.pattern is not None
+        return float(np.mean(self.told.arcs(state.pattern))) / state.pattern.radius
+
+    def results(self, rng: np.random.Generator) -> list[Compared]:
+        asked = list(self.asked())
+        worlds = [run(self.route), run(self.route.scaled(SHARP)), run(displaced(self.route, rng))]
+        found = []
+        for one in asked:
+            whole, small, elsewhere = (one.measured(w) for w in worlds)
+            found.append(Compared(one, whole, small / SHARP, elsewhere))
+        return found
+
+
+def _tooth_arcs(w: World, q: Question, frame: str) -> NDArray[np.float64]:
+    if w.made(q.of).drawn.kind == "holes":
+        return measure.holes(w, q.of, q.about, seen_from=frame).sideways
+    if q.kind.startswith("index"):
+        side = 1 if q.kind == "index ccw" else -1
+        turned = measure.index(w, q.of, q.about, side=side, seen_from=frame)
+        return np.asarray(-turned * w.made(q.of).drawn.radius)
+    got = measure.teeth(w, q.of, q.about, seen_from=frame)
+    return {"gaps": got.gap_centre, "flank ccw": got.flank_ccw, "flank cw": got.flank_cw, "wobble": got.axial}[q.kind]
+
+
+def _middles(w: World, of: str, about: str, frame: str) -> NDArray[np.float64]:
+    """Arcs of the gaps (holes) at their own middles: an oblique gap is clocked there, wherever its mid-plane lies."""
+    drawn = w.made(of).drawn
+    if drawn.kind == "holes":
+        return measure.holes(w, of, about, seen_from=frame).sideways
+    got = measure.teeth(w, of, about, seen_from=frame)
+    return got.gap_centre + np.tan(drawn.lead_angle) * got.axial
+
+
+# -- requirements and how a metrologist measures them --------------------------------------------------------------------
+
+
+def _requirements(route: Route) -> Iterator[dict[str, object]]:
+    limit = {"at_most": "5 mm"}
+    for q in route.questions:
+        if q.kind == "run-out":
+            yield {"what": "run-out", "of": q.of, "about": q.about, "at": route.surface(q.of).mid, **limit}
+            yield {"what": "coaxial", "of": q.of, "about": q.about, **limit}
+        elif q.kind == "face run-out":
+            yield {"what": "face-run-out", "of": q.of, "about": q.about, **limit}
+        elif q.kind == "gaps" and q.of == "wheel.teeth":
+            for what in ("cumulative-pitch", "single-pitch", "gap-centre-pitch"):
+                yield {"what": what, "of": q.of, "about": q.about, **limit}
+            yield {"what": "index-range", "of": q.of, "about": q.about, "at_most": "1 deg"}
+        elif q.kind == "gaps":
+            for what in ("gap-centre-pitch", "position"):
+                yield {"what": what, "of": q.of, "about": q.about, **limit}
+            if any(o.of == "wheel.teeth" for o in route.questions):
+                yield {"what": "position", "of": q.of, "about": q.about, "clock": "wheel.teeth", **limit}
+            yield {"what": "chord", "of": q.of, "about": q.about, **limit}
+            yield {"what": "pitch-circle", "of": q.of, "about": q.about, **limit}
+
+
+def _place(route: Route) -> dict[str, object] | None:
+    return None
+
+
+Measured = Callable[[World], Values]
+
+
+def _run_out(of: str, about: str, clock: str, frame: str, radius: float) -> Measured:
+    return lambda w: np.array([measure.run_out(w, of, about)])
+
+
+def _coaxial(of: str, about: str, clock: str, frame: str, radius: float) -> Measured:
+    def both(w: World) -> Values:
+        drawn = w.made(of).drawn
+        ends = np.array([[0.0, 0.0, z, 1.0] for z in (drawn.z_from, drawn.z_to)])
+        # the heights of the ends in the frame in which the relation is asked
+        heights = [float((w.drawn_between(w.made(of).part, frame) @ end)[2]) for end in ends]
+        return np.array([2.0 * max(abs(measure.offset(w, of, about, at=h, seen_from=frame)) for h in heights)])
+
+    return both
+
+
+def _face_run_out(of: str, about: str, clock: str, frame: str, radius: float) -> Measured:
+    return lambda w: np.array([measure.face_run_out(w, of, about)])
+
+
+def _length(of: str, about: str, clock: str, frame: str, radius: float) -> Measured:
+    raise NotImplementedError
+
+
+def _range(kind: tuple[str, ...], figure: Callable[[NDArray[np.float64]], float], scale: float) -> object:
+    def by(of: str, about: str, clock: str, frame: str, radius: float) -> Measured:
+        def worse(w: World) -> Values:
+            arcs = [_tooth_arcs(w, Question(k, of, about), frame) for k in kind]  # type: ignore[arg-type]
+            return np.array([max(figure(a) for a in arcs) * (scale / radius if scale else 1.0)])
+
+        return worse
+
+    return by
+
+
+def _position(of: str, about: str, clock: str, frame: str, radius: float) -> Measured:
+    def largest_vector(w: World) -> Values:
+        got = measure.holes(w, of, about, seen_from=frame)
+        turn = np.mean(got.sideways)
+        if clock:
+            first = _middles(w, clock, about, frame)[0]
+            turn = first / w.made(clock).drawn.radius * radius
+        return np.array([2.0 * np.max(np.hypot(got.outward, got.sideways - turn))])
+
+    return largest_vector
+
+
+def _chord(of: str, about: str, clock: str, frame: str, radius: float) -> Measured:
+    def worst(w: World) -> Values:
+        chords = measure.holes(w, of, about, seen_from=frame).chords
+        return np.array([np.max(np.abs(chords - 2.0 * radius * np.sin(np.pi / len(chords))))])
+
+    return worst
+
+
+def _pitch_circle(of: str, about: str, clock: str, frame: str, radius: float) -> Measured:
+    return lambda w: np.array([2.0 * (measure.holes(w, of, about, seen_from=frame).fit_radius - radius)])
+
+
+_FIGURES: dict[str, Callable[[str, str, str, str, float], Measured]] = {
+    "run-out": _run_out,
+    "coaxial": _coaxial,
+    "face-run-out": _face_run_out,
+    "cumulative-pitch": _range(("flank ccw", "flank cw"), measure.cumulative, 0.0),  # type: ignore[dict-item]
+    "single-pitch": _range(("flank ccw", "flank cw"), measure.single, 0.0),  # type: ignore[dict-item]
+    "gap-centre-pitch": _range(("gaps",), measure.cumulative, 0.0),  # type: ignore[dict-item]
+    "index-range": _range(("index ccw", "index cw"), measure.cumulative, ANGLE_ARM),  # type: ignore[dict-item]
+    "position": _position,
+    "chord": _chord,
+    "pitch-circle": _pitch_circle,
+}
