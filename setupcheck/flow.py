@@ -10,8 +10,9 @@ from pathlib import Path
 from setupcheck.jobfile.reading import LoadedJob, read_job
 from setupcheck.quantities.book import Book, Known, Scope
 from setupcheck.quantities.facts import UnknownFact, facts_of
-from setupcheck.quantities.gates import Change, Gate, gates, remedy
+from setupcheck.quantities.gates import Gate, gates
 from setupcheck.quantities.judged import Result
+from setupcheck.quantities.remedies import Remedy, remedy
 from setupcheck.quantities.route import walk
 from setupcheck.quantities.scopes import scopes
 from setupcheck.quantities.shop import Floor
@@ -49,7 +50,7 @@ class Review:
     verdict: Verdict
     results: Mapping[str, Result]
     gates: tuple[Gate, ...]
-    remedies: Mapping[str, list[Change]] = field(default_factory=dict)
+    remedies: Mapping[str, Remedy] = field(default_factory=dict)
     on: str | None = None
 
 
@@ -94,7 +95,7 @@ def review(job: LoadedJob | str | Path, *, house: str | Path | None = None, on: 
         verdict(found.findings, found.cautions),
         results,
         tuple(gates(book.scopes, list(results.values()))),
-        {key: changes for key, r in results.items() if (changes := remedy(loaded, r))},
+        {key: remedy(loaded, r) for key, r in results.items() if r.margin is not None and r.margin < 0.0},
         on,
     )
 

@@ -256,7 +256,8 @@ def joined(
 
     def turn(vector: Account) -> Account:
         if seat.turned is None:
-            return vector.turned_by_an_unknown_angle(unknown)
+            seen = vector if seat.sense > 0 else vector.mirrored()
+            return seen.turned_by_an_unknown_angle(unknown)
         return part_vector(vector, sg=seat.sense, inserted_at=-seat.sense * seat.turned)
 
     ends = sorted((seat.sense * state.low + seat.shift, seat.sense * state.high + seat.shift))

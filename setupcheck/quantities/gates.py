@@ -1,4 +1,4 @@
-"""Gates and remedies: the dial reading to accept at each hold, and the smallest change that brings a stack inside. mm, rad."""
+"""Gates: the dial reading to accept at each hold. Lengths mm, angles rad."""
 
 from __future__ import annotations
 
@@ -6,16 +6,11 @@ import math
 from collections.abc import Sequence
 from dataclasses import dataclass
 
-from setupcheck.jobfile.models import Deviation, Dimension
-from setupcheck.jobfile.reading import LoadedJob
 from setupcheck.ledger.causes import Cause
 from setupcheck.ledger.figures import Figure, alternatives
 from setupcheck.quantities.book import Scope
 from setupcheck.quantities.judged import Result
 from setupcheck.quantities.scopes import HoldEntry
-
-LEAST_KEPT = 0.2
-"""Share of a bound that better work leaves when one change is not enough. Source: our screening choice."""
 
 STEP = 0.001
 """Gates are rounded down to whole micrometres [mm]. Source: our screening choice."""
@@ -83,66 +78,3 @@ def gates(scopes: Sequence[Scope], results: Sequence[Result]) -> list[Gate]:
             reading = max(0.0, math.floor(best[0] * planned / STEP + 1e-6) * STEP)
         found.append(Gate(scope.key, scope.op, entry.step, entry.entry.on, reading, planned, best[1] if best else ""))
     return found
-
-
-@dataclass(frozen=True, slots=True)
-class Change:
-    """One entry of the job file and the value that would do.
-
-    unit "um" or "arcsec"; values in base units
-    """
-
-    cause: Cause
-    path: str
-    now: float
-    needed: float
-    unit: str
-
-
-def stated(loaded: LoadedJob, path: str) -> tuple[float, str] | None:
-    """(value in base unit, display unit) of the entry a cause rests on; None where it is not one number."""
-    node: object = loaded.job
-    for step in loaded.loc(path):
-        if isinstance(node, dict):
-            node = node.get(step)
-        elif isinstance(node, tuple) and isinstance(step, int):
-            node = node[step] if step < len(node) else None
-        else:
-            node = getattr(node, {"from": "low", "to": "high"}.get(str(step), str(step)), None)
-    if isinstance(node, Deviation):
-        value = node.measured if node.measured is not None else node.at_most
-        return (value, "um") if value is not None else None
-    if isinstance(node, Dimension):
-        return ((node.upper or 0.0) - (node.lower or 0.0)) / 2.0, "um"
-    if isinstance(node, tuple) and len(node) == 2:
-        return float(node[1]), "um"
-    if isinstance(node, float):
-        angular = any(word in path for word in (".divide.", ".tilt", "shaft_angle"))
-        return node, "arcsec" if angular else "um"
-    return None
-
-
-def remedy(loaded: LoadedJob, result: Result) -> list[Change]:
-    """The smallest change that brings a stack inside its limit: the biggest cause cut back, then the next, until it fits.
-
-    Empty where the stack is inside, or where its causes cannot be cut back far enough.
-    """
-    changes: list[Change] = []
-    margin = result.margin
-    if margin is None or margin >= 0.0:
-        return []
-    over = -margin
-    for share in result.combined.shares:
-        path = share.cause.paths[0] if share.cause.paths else ""
-        found = stated(loaded, path) if path else None
-        if found is None or share.worst <= 0.0:
-            continue
-        now, unit = found
-        keep = 1.0 - over / share.worst
-        if keep <= LEAST_KEPT:  # this one alone will not do: cut it back as far as care goes, and look at the next
-            keep = LEAST_KEPT if over > share.worst else max(keep, 0.0)
-        changes.append(Change(share.cause, path, now, now * keep, unit))
-        over -= share.worst * (1.0 - keep)
-        if over <= 1e-12:
-            return changes
-    return []

@@ -10,6 +10,7 @@ from setupcheck.notation import FACTOR
 from setupcheck.quantities.book import INCH, Known, Scope
 from setupcheck.quantities.judged import Result
 from setupcheck.quantities.scopes import stack_of
+from setupcheck.report.remedies import remedy_in_words
 from setupcheck.report.wording import clean
 from setupcheck.rulebook import Finding
 
@@ -61,7 +62,7 @@ def as_data(found: Review) -> dict[str, object]:
             }
             for g in found.gates
         ],
-        "findings": [_finding(f) for f in found.evaluation.findings],
+        "findings": [_finding(found, f) for f in found.evaluation.findings],
         "cautions": [
             {
                 "id": c.id,
@@ -108,7 +109,10 @@ def _quantities(found: Review) -> dict[str, object]:
         ):
             continue
         unit = METRIC.get(found.book.unit(name, scope), found.book.unit(name, scope))
-        value: Value = _shown(float(answer.value), unit) if isinstance(answer.value, float | int) else answer.value
+        number = float(answer.value) if isinstance(answer.value, float | int) else None
+        if number is not None and name == "stack.likely":
+            number = _settled(number)
+        value: Value = _shown(number, unit) if number is not None else str(answer.value)
         out[f"{name}@{scope.key}" if scope.key else name] = {
             "value": value,
             "unit": unit,
@@ -156,7 +160,7 @@ def _combined(result: Result, unit: str) -> dict[str, object]:
     }
 
 
-def _finding(f: Finding) -> dict[str, object]:
+def _finding(found: Review, f: Finding) -> dict[str, object]:
     unit = METRIC.get(f.unit, f.unit)
 
     def shown(value: object) -> object:
@@ -177,7 +181,7 @@ def _finding(f: Finding) -> dict[str, object]:
         "unit": unit,
         "missing": list(f.missing),
         "message": clean(f.message),
-        "remedy": f.remedy,
+        "remedy": remedy_in_words(found, f),
         "sources": [{"ref": s.ref, "place": s.place, "kind": s.kind} for s in f.sources],
         "evidence": f.evidence,
         "rests_on": list(f.rests_on),

@@ -8,9 +8,10 @@ from setupcheck.flow import Review
 from setupcheck.ledger.combine import TRIALS
 from setupcheck.notation import show
 from setupcheck.quantities.book import Open, Scope
-from setupcheck.quantities.gates import Change, Gate
+from setupcheck.quantities.gates import Gate
 from setupcheck.quantities.judged import Result
 from setupcheck.quantities.scopes import stack_of
+from setupcheck.report.remedies import remedy_in_words
 from setupcheck.report.wording import cause_in_words, clean, finer, in_unit, unit_of, wrap
 from setupcheck.rulebook import VERDICTS, CautionLine, Finding
 
@@ -101,8 +102,7 @@ def _finding(found: Review, finding: Finding) -> Iterator[str]:
     result = found.results.get(finding.key)
     if result is not None and finding.rule.startswith("STACK") and result.combined.shares:
         yield from wrap("Biggest: " + "; ".join(_share(found, result, 3)) + ".", first="      ", rest="      ")
-    changes = found.remedies.get(finding.key, []) if finding.rule.startswith("STACK") else []
-    remedy = _remedy(changes, inches=found.book.inches) if changes else finding.remedy
+    remedy = remedy_in_words(found, finding)
     if remedy and finding.verdict != "waived":
         yield from wrap(f"Do: {remedy}", first="      ", rest="          ")
     if finding.verdict == "open" and finding.missing:
@@ -117,8 +117,8 @@ def _finding(found: Review, finding: Finding) -> Iterator[str]:
         yield from wrap(f"House limit: {clean(finding.house)}", first="      ", rest="      ")
     if finding.waiver:
         yield from wrap(f"Waived: {clean(finding.waiver)}", first="      ", rest="      ")
-    source = "; ".join(f"{s.ref}, {s.place}" if s.place else s.ref for s in finding.sources[:1])
-    yield from wrap(f"Source: {source} ({finding.evidence})", first="      ", rest="          ")
+    told = [f"{s.ref}, {s.place} ({s.kind})" if s.place else f"{s.ref} ({s.kind})" for s in finding.sources]
+    yield from wrap("Source: " + "; ".join(told), first="      ", rest="          ")
 
 
 def _margin(finding: Finding) -> str:
@@ -126,19 +126,6 @@ def _margin(finding: Finding) -> str:
         return ""
     shown = show(abs(finding.margin), finding.unit or "1", finding.digits)
     return f" Margin {shown}." if finding.margin >= 0 else f" Over by {shown}."
-
-
-def _remedy(changes: list[Change], *, inches: bool) -> str:
-    """`bring … from 50 to 12 um` for each entry to change."""
-    told = []
-    for change in changes:
-        unit, digits = finer(change.unit, inches=inches)
-        told.append(
-            f"bring the {cause_in_words(change.cause.key)} from {in_unit(change.now, unit, digits)} down to "
-            f"{show(change.needed, unit, digits)} ({change.path})"
-        )
-    text = "; and ".join(told)
-    return text[:1].upper() + text[1:] + ". Or cut both surfaces in one holding, so that it drops out."
 
 
 def _share(found: Review, result: Result, most: int) -> list[str]:

@@ -274,7 +274,7 @@ class _Walk:
     def _end_commas(self) -> None:
         if self.commas is not None:
             run, self.commas = self.commas, None
-            self.broken.append((run.problem(self.text), run.path))
+            self.wrong.append((run.problem(self.text), run.path))
             self._stop_at_many()
 
     def _refuse_extras(self, event: yaml.ScalarEvent | yaml.CollectionStartEvent) -> None:

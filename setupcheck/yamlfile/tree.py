@@ -78,9 +78,10 @@ class Tree:
 
     def together(self, found: Iterable[Problem]) -> tuple[Problem, ...]:
         """The problems of the file and those that a reader of the data found; where the file itself is wrong at a
-        place, what was found there later is left out."""
+        place (or at one value of a list), what was found there later is left out."""
         wrong = {(problem.line, problem.column) for problem in self.problems}
-        return self.problems + tuple(p for p in found if (p.line, p.column) not in wrong)
+        lists = {problem.path.rpartition("[")[0] for problem in self.problems if problem.path.endswith("]")}
+        return self.problems + tuple(p for p in found if (p.line, p.column) not in wrong and p.path not in lists)
 
     def _find(self, path: Path) -> Node:
         node = self.root

@@ -106,7 +106,7 @@ def test_a_figure_with_a_sign_may_have_a_limit_below_zero(what: str) -> None:
     assert read_job_text(RING + asked, "job.yaml")
 
 
-@pytest.mark.parametrize(("what", "across"), product(get_args(What), [None, "40"]))
+@pytest.mark.parametrize(("what", "across"), list(product(get_args(What), [None, "40"])))
 def test_the_reader_and_the_stacks_agree_on_the_kind_of_every_limit(what: str, across: str | None) -> None:
     asked = Require.model_validate({"what": what, "grade": 5, "across": across})
     assert dimension_of(asked) == limit_kind(asked)

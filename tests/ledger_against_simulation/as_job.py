@@ -284,6 +284,10 @@ class Writer:
         """A vector of the machine in the frame in which the surfaces are kept: the outer part's, once joined."""
         turned = cmath.exp(1j * setup.insertion)
         own = vector / turned if setup.looks_at_tool > 0 else turned * vector.conjugate()
+        if not self.given.mounting_said and setup.part == "spindle":
+            # the bound of an inner part is not turned with it, for any direction is as good: tell it turned
+            join = next(s for s in self.route.steps if isinstance(s, Join))
+            return own * cmath.exp(-1j * join.insertion)
         if setup.part not in self.joins:
             return own
         _, way, insertion = self.joins[setup.part]

@@ -31,7 +31,7 @@ from .told import Told, value
 
 Values = NDArray[np.float64] | NDArray[np.complex128]
 LEAN_ARM, ANGLE_ARM = 100.0, 50.0  # mm
-MATTERS = 1e-4  # mm: a figure that changes by more with what nobody stated is not determined
+MATTERS = 2e-5  # mm: a figure that changes by more with what nobody stated is not determined
 
 
 @dataclass(frozen=True, eq=False, slots=True)
@@ -46,8 +46,8 @@ class Asked:
 
 @dataclass(frozen=True, eq=False, slots=True)
 class Compared:
-    """measured: as simulated; sharp: simulated with errors times SHARP and divided by it; elsewhere: with what is not
-    stated displaced."""
+    """measured: as simulated; sharp: simulated with errors times SHARP and divided by it; elsewhere: likewise, with what
+    nobody stated displaced."""
 
     asked: Asked
     measured: Values
@@ -56,7 +56,7 @@ class Compared:
 
     @property
     def undetermined(self) -> bool:
-        return largest(self.measured - self.elsewhere) > MATTERS
+        return largest(self.sharp - self.elsewhere) > MATTERS
 
 
 def largest(values: Values) -> float:
@@ -198,11 +198,11 @@ class Comparison:
 
     def results(self, rng: np.random.Generator) -> list[Compared]:
         asked = list(self.asked())
-        worlds = [run(self.route), run(self.route.scaled(SHARP)), run(displaced(self.route, rng))]
+        worlds = [run(self.route), run(self.route.scaled(SHARP)), run(displaced(self.route, rng).scaled(SHARP))]
         found = []
         for one in asked:
             whole, small, elsewhere = (one.measured(w) for w in worlds)
-            found.append(Compared(one, whole, small / SHARP, elsewhere))
+            found.append(Compared(one, whole, small / SHARP, elsewhere / SHARP))
         return found
 
 

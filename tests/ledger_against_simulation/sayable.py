@@ -24,12 +24,15 @@ from ..rigidbody.route import (
     CutTeeth,
     Drill,
     Existing,
+    FaceDial,
     FaceSquares,
     Join,
+    Lean,
     NoClock,
     NoStop,
     Offset,
     Part,
+    RadialDial,
     Route,
     Setup,
     Surface,
@@ -80,16 +83,20 @@ def sayable(route: Route, rng: Rng) -> Sayable:
     devices = [cmath.rect(0.02, float(rng.uniform(-3, 3))) for _ in range(2)]
     divisions: dict[tuple[int, str], Division] = {}
     steps: list[Setup | Join] = []
-    for step in route.steps:
+    joined = next((i for i, step in enumerate(route.steps) if isinstance(step, Join)), len(route.steps))
+    # without the mounting angle nothing can be said about a direction of the inner part afterwards
+    said = any(_on_spindle(step) for step in route.steps[joined:]) or bool(rng.random() < 0.7)
+    for i, step in enumerate(route.steps):
         if isinstance(step, Join):
             steps.append(_join(step, drawn))
             continue
+        if not said and i < joined and _on_spindle(step):
+            step = dataclasses.replace(step, hold=_read_by_a_dial(step.hold, rng))
         cuts = tuple(
             _cut(cut, step.op, drawn[cut.surface], first, divisions, rng) if isinstance(cut, CutTeeth | Drill) else cut
             for cut in step.cuts
         )
         steps.append(dataclasses.replace(step, hold=_hold(step.hold, drawn, devices, rng), cuts=cuts))
-    said = bool(rng.random() < 0.85)
     return Sayable(dataclasses.replace(route, parts=parts, steps=tuple(steps)), divisions, lead, said)
 
 
@@ -100,6 +107,27 @@ def _part(part: Part, lead: float) -> Part:
     bearings = next(e for e in part.existing if e.surface == "bearings")
     straight = tuple(dataclasses.replace(e, lean=bearings.lean) if e.surface == "journal" else e for e in part.existing)
     return Part(part.name, surfaces, straight)
+
+
+def _on_spindle(step: Setup | Join) -> bool:
+    return isinstance(step, Setup) and step.part == "spindle"
+
+
+def _read_by_a_dial(hold: CentredAndSquared | TwoPlanes, rng: Rng) -> CentredAndSquared | TwoPlanes:
+    """Vectors of the machine become readings in a direction of the part."""
+
+    def centre(plane: Centre) -> Centre:
+        if not isinstance(plane.by, Offset):
+            return plane
+        return dataclasses.replace(plane, by=RadialDial(2.0 * abs(plane.by.vector), float(rng.uniform(-3, 3))))
+
+    if isinstance(hold, TwoPlanes):
+        return TwoPlanes(centre(hold.first), centre(hold.second))
+    square = hold.square
+    if isinstance(square.by, Lean):
+        by = FaceDial(80.0 * abs(square.by.slope), 80.0, float(rng.uniform(-3, 3)))
+        square = dataclasses.replace(square, by=by)
+    return CentredAndSquared(centre(hold.centre), square)
 
 
 def _hold(

@@ -12,9 +12,9 @@ from fractions import Fraction
 
 import pytest
 
+from setupcheck.division.methods import circles_that_fit, holes_left_over, turns_per_place
 from setupcheck.notation import angle
 from setupcheck.quantities.book import Known
-from setupcheck.quantities.dividing import circles_that_fit, holes_left_over, turns_per_place
 
 from .bench import ARCSEC, UM, findings, reviewed, stack
 from .test_folded_harmonics import indexed

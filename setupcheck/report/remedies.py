@@ -1,0 +1,39 @@
+"""Remedies in shop words: the one found for a stack, else the general one of its rule."""
+
+from __future__ import annotations
+
+from setupcheck.flow import Review
+from setupcheck.notation import show
+from setupcheck.quantities.remedies import Remedy
+from setupcheck.report.wording import cause_in_words, finer, in_unit
+from setupcheck.rulebook import Finding
+
+STACK_RULES = ("STACK-001", "STACK-002")
+"""Rules whose remedy is worked out from the stack itself."""
+
+
+def remedy_in_words(found: Review, finding: Finding) -> str:
+    """What to do about a finding."""
+    if finding.rule in STACK_RULES and finding.key in found.remedies:
+        return _worked_out(found.remedies[finding.key], inches=found.book.inches) or finding.remedy
+    return finding.remedy
+
+
+def _worked_out(remedy: Remedy, *, inches: bool) -> str:
+    """The smallest change in words; empty where nothing simple does it."""
+    if remedy.swap is not None:
+        swap = remedy.swap
+        unit, digits = ("thou", 1) if inches else ("um", 0)
+        return (
+            f"Hold op {swap.op} on {swap.on} instead of {swap.was}, as op {swap.like} does, so that what lies between the two "
+            f"drops out, and true it to {show(swap.reading, unit, digits)} ({swap.path})."
+        )
+    told = []
+    for change in remedy.changes:
+        unit, digits = finer(change.unit, inches=inches)
+        told.append(
+            f"bring the {cause_in_words(change.cause.key)} from {in_unit(change.now, unit, digits)} down to "
+            f"{show(change.needed, unit, digits)} ({change.path})"
+        )
+    text = "; and ".join(told)
+    return text[:1].upper() + text[1:] + "." if text else ""

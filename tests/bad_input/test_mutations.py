@@ -1,0 +1,96 @@
+"""Shipped jobs spoilt at random: a review either returns or says in words what is wrong; nothing else comes out."""
+
+from __future__ import annotations
+
+import re
+
+import pytest
+from hypothesis import HealthCheck, given, settings
+from hypothesis import strategies as st
+
+from setupcheck.errors import SetupcheckError
+from setupcheck.flow import review
+from setupcheck.jobfile.reading import read_job_text
+from setupcheck.report.text import as_text
+from setupcheck.shipped import shipped
+from tests.bad_input.ring import RING
+
+JOBS = [RING, *(path.read_text("utf-8") for path in sorted(shipped("jobs").glob("*.yaml")))]
+PAIR = re.compile(r"(?P<key>[A-Za-z_]+):[ ]*(?P<value>\{[^{}]*\}|\[[^\[\]]*\]|[^,{}\[\]\n#]+)")
+JUNK = (
+    "", "0", "-1", "1", "1e+9", "-0.001", "0 um", "900 mm", "2,5 um", "nan", ".inf", "15:30", "no", "010", "abc", "''",
+    "[]", "{}", "[1, 2]", "[0 um, 0 um]", "{a: 1}", "null", "true", "1 deg", "50 %", "40 N m", "32 H6", "bore", "teeth",
+    "tooth 14", "90 deg", "jaw 2", "mark", "10", "{measured: 3 um}", "{measured: 3 um, high_at: tooth 1}", "slot",
+    "{device: D, mark: kept}", "chord", "position", "allowance", "edge-finder", "free", "'@'", "a.b.c", "x" * 300,
+    "\x1b[31m", "'\u043a\u043b\u044e\u0447'",
+)  # fmt: skip
+
+
+def mutated(text: str, kind: str, draw: st.DrawFn) -> str:
+    """The text with one place spoilt."""
+    lines = text.split("\n")
+    if kind == "cut short" and len(text) > 1:
+        return text[: draw(st.integers(1, len(text) - 1))]
+    if kind in ("line twice", "line lost"):
+        at = draw(st.integers(0, len(lines) - 1))
+        return "\n".join(lines[:at] + [lines[at]] * (2 if kind == "line twice" else 0) + lines[at + 1 :])
+    pairs = list(PAIR.finditer(text))
+    if not pairs:
+        return text
+    pair = draw(st.sampled_from(pairs))
+    if kind == "key lost":
+        end = pair.end() + (2 if text[pair.end() : pair.end() + 2] == ", " else 0)
+        return text[: pair.start()] + text[end:]
+    if kind == "another value of the same key":
+        same = [other["value"] for other in pairs if other["key"] == pair["key"]]
+        return text[: pair.start("value")] + draw(st.sampled_from(same)) + text[pair.end("value") :]
+    return text[: pair.start("value")] + draw(st.sampled_from(JUNK)) + text[pair.end("value") :]
+
+
+KINDS = ("cut short", "line twice", "line lost", "key lost", "another value of the same key", "junk", "junk")
+
+
+@st.composite
+def spoilt_jobs(draw: st.DrawFn) -> str:
+    text = draw(st.sampled_from(JOBS))
+    for kind in draw(st.lists(st.sampled_from(KINDS), min_size=1, max_size=3)):
+        text = mutated(text, kind, draw)
+    return text
+
+
+def goes_through(text: str) -> None:
+    """A review of the text, or a refusal in words; anything else is our bug and comes out of here."""
+    try:
+        said = as_text(review(read_job_text(text, "job.yaml")), everything=True)
+    except SetupcheckError as wrong:
+        said = str(wrong)
+    assert said
+    assert "\x1b" not in said
+
+
+@settings(derandomize=True, max_examples=60, deadline=None, database=None, suppress_health_check=[HealthCheck.too_slow])
+@given(spoilt_jobs())
+def test_a_spoilt_job_is_reviewed_or_refused_in_words(text: str) -> None:
+    goes_through(text)
+
+
+PLATE = next(text for text in JOBS if "Index plate" in text)
+ONCE_BROKEN = {
+    "an allowance of no surface": RING + "  - {what: allowance, at_least: 0.1 mm}\n",
+    "a pitch figure of a single slot": PLATE.replace("gap-centre-pitch, of: plate.holes", "gap-centre-pitch, of: slot"),
+    "a cutter named by a number": RING.replace("{teeth: {error: 20 um}", "{teeth: {error: 20 um, cutter: 30}"),
+    "a surface named by a number": RING.replace("of: ring.teeth, about", "of: 50, about"),
+    "a state in odd digits": RING.replace("{on: bore, by", "{on: bore@\u00b2, by"),
+    "a state of five thousand digits": RING.replace("{on: bore, by", f"{{on: bore@{'9' * 5000}, by"),
+    "an alias for a key": RING.replace("setupcheck: 1", "*setupcheck : 1"),
+    "a deviation larger below than above": RING.replace("diameter: 32 H7", "diameter: {nominal: 32, lower: 1, upper: 0}"),
+    "a measured machine error below zero": RING.replace("axis_runout: 2 um", "axis_runout: {measured: -2 um}"),
+    "units of no kind": RING.replace("units: mm", "units: [mm]"),
+    "units that are a map": RING.replace("units: mm", "units: {mm: 1}"),
+}  # fmt: skip
+
+
+@pytest.mark.parametrize("case", ONCE_BROKEN)
+def test_a_text_that_once_broke_the_review_goes_through(case: str) -> None:
+    assert ONCE_BROKEN[case] not in JOBS
+    goes_through(ONCE_BROKEN[case])

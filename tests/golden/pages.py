@@ -1,0 +1,80 @@
+"""Whole reports and README excerpts, kept as files and compared. Run this file to write them anew:
+
+    python -m tests.golden.pages
+"""
+
+from __future__ import annotations
+
+import re
+from pathlib import Path
+
+from setupcheck.errors import JobError
+from setupcheck.flow import review
+from setupcheck.jobfile.reading import read_job_text
+from setupcheck.report.text import as_text
+
+ROOT = Path(__file__).resolve().parents[2]
+HERE = Path(__file__).resolve().parent
+WHEEL = (ROOT / "jobs" / "rotator-worm-wheel.yaml").read_text(encoding="utf-8")
+SHIMMED = WHEEL.replace(
+    "centre: {on: hub, by: four-jaw, runout: {at_most: 6 um, measured: 4 um, uncertainty: 1 um}}",
+    "centre: {on: rim, by: shimmed-jaws, runout: 100 um}",
+)
+MISTAKES = (
+    WHEEL.replace("clearance: [2 um, 8 um]", "clearance: [2 um, 8,5 um]")
+    .replace("centre: {on: rim, by: soft-jaws, at: 12", "centre: {on: rimm, by: soft-jaws, at: 12")
+    .replace("uncertainty: 2', leans: nose-up", "uncertainty: 2 um, leans: nose-up")
+)
+
+
+def reports() -> dict[str, str]:
+    """File name -> text of every golden report."""
+    found = {f"{job.stem}.txt": as_text(review(job)) for job in sorted((ROOT / "jobs").glob("*.yaml"))}
+    found["shimmed-jaws.txt"] = as_text(review(read_job_text(SHIMMED, "shimmed-jaws.yaml")))
+    return found
+
+
+def mistakes() -> str:
+    """What the reader says to a file with three mistakes."""
+    try:
+        read_job_text(MISTAKES, "wheel.yaml")
+    except JobError as wrong:
+        return str(wrong)
+    raise AssertionError("the mistakes went unnoticed")
+
+
+def excerpts() -> dict[str, str]:
+    """The excerpts of the README, cut out of the real reports."""
+    shimmed = reports()["shimmed-jaws.txt"].splitlines()
+    head = [line for line in shimmed[:2] if line]
+    first = next(i for i, line in enumerate(shimmed) if line.startswith("  fail  STACK-001"))
+    after = next(i for i in range(first + 1, len(shimmed)) if re.match(r"  \w+  [A-Z]+-\d|$", shimmed[i]))
+    good = reports()["rotator-worm-wheel.txt"].splitlines()
+    asked = good.index("WHAT WAS ASKED, at its worst")
+    dials = good.index("DIAL READING TO ACCEPT, all else as planned")
+    return {
+        "shimmed": "\n".join([*head, "", "FINDINGS", *shimmed[first:after], "  …"]),
+        "good": "\n".join([*good[:2], "", *good[asked : asked + 9], "  …", "", *good[dials + 9 : dials + 13], "  …"]),
+        "mistakes": mistakes(),
+    }
+
+
+def readme_with_excerpts() -> str:
+    """The README with its excerpts put in."""
+    text = (ROOT / "README.md").read_text(encoding="utf-8")
+    for name, excerpt in excerpts().items():
+        fence = re.compile(rf"(<!-- excerpt: {name} -->\n```\n).*?(```\n)", re.S)
+        assert len(fence.findall(text)) == 1, name
+        text = fence.sub(lambda m, e=excerpt: f"{m[1]}{e}\n{m[2]}", text)
+    return text
+
+
+def write() -> None:
+    """Write golden files and README excerpts anew."""
+    for name, text in reports().items():
+        (HERE / name).write_text(text, encoding="utf-8")
+    (ROOT / "README.md").write_text(readme_with_excerpts(), encoding="utf-8")
+
+
+if __name__ == "__main__":
+    write()

@@ -1,0 +1,21 @@
+"""Whole reports against golden files, and the README's excerpts against the real thing."""
+
+from __future__ import annotations
+
+import pytest
+
+from tests.golden import pages
+
+
+@pytest.mark.parametrize("name", sorted(pages.reports()))
+def test_a_report_is_the_same_to_the_letter(name: str) -> None:
+    assert (pages.HERE / name).read_text(encoding="utf-8") == pages.reports()[name]
+
+
+def test_the_excerpts_of_the_readme_are_real() -> None:
+    assert (pages.ROOT / "README.md").read_text(encoding="utf-8") == pages.readme_with_excerpts()
+
+
+def test_no_line_of_a_report_is_wider_than_eighty_columns() -> None:
+    for name, text in pages.reports().items():
+        assert [line for line in text.splitlines() if len(line) > 80] == [], name
