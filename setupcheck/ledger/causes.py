@@ -32,6 +32,9 @@ Mode = Literal["planned", "measured", "typical", "derived"]
 TRUNCATION = 3.0
 """Gaussian causes end at this many standard deviations, so that `worst` exists. Source: our screening choice."""
 
+TRUNCATION_2D = 3.4393
+"""The same for a vector: 99.73 % of a two-dimensional Gaussian lie within sqrt(-2 ln 0.0027). Source: Rayleigh law."""
+
 
 @dataclass(frozen=True, slots=True, eq=False)
 class Cause:
@@ -42,7 +45,7 @@ class Cause:
     law      how X is spread:
              disc             uniform over the disc of radius `high` (an eccentricity of which only a bound is known)
              ring             |X| = `high`, every direction alike, the radius blurred by `spread`
-             blur             two independent Gaussians of standard deviation `spread`, |X| cut at 3 `spread`
+             blur             two independent Gaussians of standard deviation `spread`, |X| cut at 3.44 `spread`
              clearance-disc   diametral play drawn in `low` .. `high`, X anywhere in the disc of half of it
              clearance-ring   the same play, the part pushed or hung against the wall: |X| = half of it
              rectangle        |Re X| <= `low`, |Im X| <= `high` (two readout axes)
@@ -92,7 +95,9 @@ class Cause:
                 return self.high
             case "ring":
                 return self.high + TRUNCATION * self.spread
-            case "blur" | "gauss":
+            case "blur":
+                return TRUNCATION_2D * self.spread
+            case "gauss":
                 return TRUNCATION * self.spread
             case "clearance-disc" | "clearance-ring":
                 return self.high / 2.0

@@ -15,7 +15,7 @@ from numpy.typing import NDArray
 
 from setupcheck.ledger import teeth
 from setupcheck.ledger.account import Account
-from setupcheck.ledger.causes import TRUNCATION, Cause, stream_key
+from setupcheck.ledger.causes import TRUNCATION, TRUNCATION_2D, Cause, stream_key
 from setupcheck.ledger.figures import Figure, Push
 from setupcheck.ledger.route import Pattern, Scatter
 
@@ -172,8 +172,8 @@ def _cut_normal(rng: np.random.Generator, n: int) -> Reals:
 
 
 def _cut_rayleigh(rng: np.random.Generator, n: int) -> Reals:
-    """Lengths of two-dimensional standard normal vectors, none longer than 3 (inverse of the cut Rayleigh law)."""
-    share = _uniform(rng, n) * _single(1.0 - math.exp(-(TRUNCATION**2) / 2.0))
+    """Lengths of two-dimensional standard normal vectors, none longer than 3.44 (inverse of the cut Rayleigh law)."""
+    share = _uniform(rng, n) * _single(1.0 - math.exp(-(TRUNCATION_2D**2) / 2.0))
     return np.asarray(np.sqrt(np.float32(-2.0) * np.log1p(-share)))
 
 

@@ -21,7 +21,9 @@ def count(floor: Floor, setup: Setup) -> int | None:
 
 
 def worm_ratio(floor: Floor, setup: Setup) -> int | Open | None:
-    """Turns of the crank for one turn of the spindle. Source: the job file's record of the machine."""
+    """Turns of the crank for one turn of the spindle; None where nothing is divided. Source: the job file's record."""
+    if count(floor, setup) is None:
+        return None
     _, machine = machine_of(floor.loaded, setup)
     if machine is None or machine.worm_ratio is None:
         return Open((f"machines.{setup.machine}.worm_ratio" if machine is not None else f"setups.{setup.op}.machine",))

@@ -242,13 +242,14 @@ def _axis(held: Held, hold: Hold) -> tuple[Account, Account]:
         if hold.and_centre is not None and hold.and_centre.on == hold.centre.on
         else ""
     )
-    first = state.axis_at(z1) - centring(held, hold.centre, "centre", state, pair=pair)
+    axis, error = state.axis_at(z1), centring(held, hold.centre, "centre", state, pair=pair)
+    first = axis - error
     if hold.square is not None:
         if face is None:
             lean = Account.of(Cause(f"op {op}: how the part leans", "undetermined", op, missing=held.path("square.on")))
             return first - lean * z1, lean
         return route.axis_from_face(
-            first, z_datum=z1, centring=Account(), face_lean=face.lean, seating=seating(held, hold.square, face)
+            axis, z_datum=z1, centring=error, face_lean=face.lean, seating=seating(held, hold.square, face)
         )
     if hold.and_centre is not None:
         if second is None:

@@ -56,7 +56,10 @@ def draws() -> Draws:
 
 
 def requirements(floor: Floor) -> float | None:
-    """Number of requirements; None for a job with neither teeth nor a joint, which needs none."""
+    """Number of requirements; None for a job with neither teeth nor a joint, which needs none.
+
+    Source: our screening choice (a plan without an aim cannot pass).
+    """
     job = floor.loaded.job
     toothed = any(s.kind == "teeth" for p in job.parts.values() for s in p.surfaces.values())
     joined = any(setup.join is not None for setup in job.setups)

@@ -49,6 +49,8 @@ def stated(loaded: LoadedJob, path: str) -> tuple[float, str] | None:
         value = node.measured if node.measured is not None else node.at_most
         return (value, "um") if value is not None else None
     if isinstance(node, Dimension):
+        if node.uncertainty is not None:
+            return node.uncertainty, "um"
         return ((node.upper or 0.0) - (node.lower or 0.0)) / 2.0, "um"
     if isinstance(node, tuple) and len(node) == 2:
         return float(node[1]), "um"

@@ -125,6 +125,8 @@ def _cut(floor: Floor, held: Held, placing: Placing, name: str, cut: Cut) -> Non
     if target.pattern is not None:
         fresh = tooth_pattern(node, _worm_angle(loaded, ref.part))
         assert fresh is not None
+        start = floor.sense(ref.part) * fresh.start + (floor.mark(ref.part) or 0.0)
+        fresh = replace(fresh, start=start)
         _, machine = machine_of(loaded, setup)
         pattern = divided(
             fresh,

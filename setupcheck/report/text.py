@@ -114,7 +114,7 @@ def _finding(found: Review, finding: Finding) -> Iterator[str]:
     if finding.rests_on:
         yield from wrap("Rests on typical values: " + ", ".join(finding.rests_on) + ".", first="      ", rest="      ")
     if finding.house:
-        yield from wrap(f"House limit: {clean(finding.house)}", first="      ", rest="      ")
+        yield from wrap(f"By {clean(finding.house)}", first="      ", rest="      ")
     if finding.waiver:
         yield from wrap(f"Waived: {clean(finding.waiver)}", first="      ", rest="      ")
     told = [f"{s.ref}, {s.place} ({s.kind})" if s.place else f"{s.ref} ({s.kind})" for s in finding.sources]
@@ -214,6 +214,8 @@ def _statistics(result: Result, unit: str, digits: int, confidence: float) -> st
     else:
         likely = f"{share} stay under {show(c.likely.high, unit, digits)}"
     rss = show(c.rss.low if c.end == "low" else c.rss.high, unit, digits)
+    if result.stack.low is not None and result.stack.high is not None:
+        rss = f"{in_unit(c.rss.low, unit, digits)} to {show(c.rss.high, unit, digits)}"
     text = f"Of {TRIALS:,} draws {likely}; rss {rss}"
     if c.chance is not None and c.chance < 1.0 and c.chance_error is not None:
         text += f"; chance of meeting it {c.chance * 100:.1f} ± {c.chance_error * 100:.1f} %"

@@ -33,7 +33,7 @@ ENGINE_RULES: tuple[EngineRule, ...] = (
     EngineRule(
         "WAIVE-003",
         "A waiver has not ended",
-        "fail, or open without a day of judging",
+        "warn, or open without a day of judging",
         "An end was set so that somebody looks again; without the day nobody can say whether it has come.",
     ),
     EngineRule(

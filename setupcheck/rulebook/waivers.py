@@ -85,13 +85,13 @@ def _ended(waiver: Waiver, on: str | None) -> Finding | None:
     what = f"the waiver of {waiver.rule} at {waiver.at}"
     if not is_date(waiver.until):
         text = f"{what} ends on '{waiver.until}', which is no date"
-        return _finding("WAIVE-003", "fail", waiver, text, "Write year-month-day, as in 2027-03-31.")
+        return _finding("WAIVE-003", "warn", waiver, text, "Write year-month-day, as in 2027-03-31.")
     if on is None:
         text = f"cannot tell: {what} ends on {waiver.until} and no day of judging is given"
         return _finding("WAIVE-003", "open", waiver, text, "Give the day with --on.", missing="--on")
     if on > waiver.until:  # both are year-month-day, so text order is date order
         text = f"{what} ended on {waiver.until}"
-        return _finding("WAIVE-003", "fail", waiver, text, "Mend the cause, or look at it again and set a new end.")
+        return _finding("WAIVE-003", "warn", waiver, text, "Mend the cause, or look at it again and set a new end.")
     return None
 
 

@@ -42,6 +42,7 @@ from .sayable import JAWS, Sayable
 
 Node = dict[str, object]
 T = TypeVar("T")
+DUMPER = getattr(yaml, "CSafeDumper", yaml.SafeDumper)
 BOUND = "400 um"  # of what is told instead
 
 
@@ -118,7 +119,7 @@ class Writer:
         if place is not None:
             job["place"] = place
         job["require"] = require
-        return yaml.safe_dump(job, sort_keys=False, default_flow_style=None, width=200)
+        return str(yaml.dump(job, Dumper=DUMPER, sort_keys=False, default_flow_style=None, width=200))
 
     # -- parts -----------------------------------------------------------------------------------------------------
 

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Callable, Iterator
 from dataclasses import dataclass
+from itertools import combinations
 
 import numpy as np
 from numpy.typing import NDArray
@@ -22,11 +23,10 @@ from setupcheck.quantities.stacks import Built, build
 
 from ..rigidbody import measure
 from ..rigidbody.machining import run
-from ..rigidbody.made import World
 from ..rigidbody.random_routes import SHARP
 from ..rigidbody.route import Question, Route
 from .as_job import AsJob, as_job
-from .sayable import Sayable, displaced
+from .sayable import HOLES, Sayable, displaced
 from .told import Told, value
 
 Values = NDArray[np.float64] | NDArray[np.complex128]
@@ -34,14 +34,48 @@ LEAN_ARM, ANGLE_ARM = 100.0, 50.0  # mm
 MATTERS = 2e-5  # mm: a figure that changes by more with what nobody stated is not determined
 
 
+class Bench:
+    """A simulated world, and what has been measured on its teeth."""
+
+    def __init__(self, route: Route) -> None:
+        self.world = run(route)
+        self._arcs: dict[tuple[str, str, str, str], NDArray[np.float64]] = {}
+
+    def arcs(self, kind: str, of: str, about: str, frame: str) -> NDArray[np.float64]:
+        """Arcs of every gap (`gaps`, `flank ccw`, ...), its axial place (`wobble`), or arcs of the angle on a worm."""
+        if (kind, of, about, frame) not in self._arcs:
+            self._measure(kind, of, about, frame)
+        return self._arcs[kind, of, about, frame]
+
+    def middles(self, of: str, about: str, frame: str) -> NDArray[np.float64]:
+        """Arcs of the gaps (holes) at their own middles: an oblique gap is clocked there, wherever its mid-plane lies."""
+        drawn, gaps = self.world.made(of).drawn, self.arcs("gaps", of, about, frame)
+        if drawn.kind == "holes":
+            return gaps
+        return gaps + np.tan(drawn.lead_angle) * self.arcs("wobble", of, about, frame)
+
+    def _measure(self, kind: str, of: str, about: str, frame: str) -> None:
+        drawn = self.world.made(of).drawn
+        if drawn.kind == "holes":
+            found = {"gaps": measure.holes(self.world, of, about, seen_from=frame).sideways}
+        elif kind.startswith("index"):
+            side = 1 if kind == "index ccw" else -1
+            found = {kind: -drawn.radius * measure.index(self.world, of, about, side=side, seen_from=frame)}
+        else:
+            got = measure.teeth(self.world, of, about, seen_from=frame)
+            found = {"gaps": got.gap_centre, "flank ccw": got.flank_ccw, "flank cw": got.flank_cw, "wobble": got.axial}
+        for one, values in found.items():
+            self._arcs[one, of, about, frame] = values
+
+
 @dataclass(frozen=True, eq=False, slots=True)
 class Asked:
-    """A figure: its name, the package's answer (None: open), and how to measure it on a simulated world."""
+    """A figure: its name, the package's answer (None: open), and how to measure it in the simulation."""
 
     name: str
     kind: str
     predicted: Values | None
-    measured: Callable[[World], Values]
+    measured: Callable[[Bench], Values]
 
 
 @dataclass(frozen=True, eq=False, slots=True)
@@ -75,6 +109,10 @@ class Comparison:
         self.floor: Floor = walk(self.loaded)
         self.told = Told(self.job.truth)
 
+    def made(self, name: str) -> bool:
+        part, _, surface = name.partition(".")
+        return part in self.floor.bodies and self.floor.now(Ref(part, surface)) is not None
+
     def state(self, name: str) -> State:
         part, _, surface = name.partition(".")
         state = self.floor.now(Ref(part, surface))
@@ -102,19 +140,19 @@ class Comparison:
         if q.kind not in ("offset", "lean", "length"):
             return None
         g, r, frame = self.state(q.of), self.state(q.about), self.frame(q.of)
-        measured: Callable[[World], Values]
+        measured: Callable[[Bench], Values]
         if q.kind == "offset":
             found = self.value(g.offset - r.axis_at(g.z))
-            measured = lambda w: np.array([measure.offset(w, q.of, q.about, seen_from=frame)])  # noqa: E731
+            measured = lambda b: np.array([measure.offset(b.world, q.of, q.about, seen_from=frame)])  # noqa: E731
         elif q.kind == "lean":
             found = self.value((g.lean - r.lean) * LEAN_ARM)
-            measured = lambda w: LEAN_ARM * np.array([measure.lean(w, q.of, q.about, seen_from=frame)])  # noqa: E731
+            measured = lambda b: LEAN_ARM * np.array([measure.lean(b.world, q.of, q.about, seen_from=frame)])  # noqa: E731
         else:
             found = self.value(g.axial - self.state(q.against).axial)
 
-            def measured(w: World) -> Values:
-                got = measure.length(w, q.of, q.against, q.about, seen_from=frame)
-                return np.array([got - measure.drawn_length(w, q.of, q.against, seen_from=frame)])
+            def measured(b: Bench) -> Values:
+                got = measure.length(b.world, q.of, q.against, q.about, seen_from=frame)
+                return np.array([got - measure.drawn_length(b.world, q.of, q.against, seen_from=frame)])
 
         return Asked(f"{q}", q.kind, None if found is None else np.array([found]), measured)
 
@@ -126,8 +164,8 @@ class Comparison:
         if predicted is not None:
             predicted = predicted - np.mean(predicted)
 
-        def measured(w: World) -> Values:
-            got = _tooth_arcs(w, q, frame)
+        def measured(b: Bench) -> Values:
+            got = b.arcs(q.kind, q.of, q.about, frame)
             return got - np.mean(got)
 
         return Asked(f"{q}", q.kind, predicted, measured)
@@ -170,19 +208,22 @@ class Comparison:
         )
 
     def _clocks(self) -> Iterator[Asked]:
-        """Angle from one pattern to the other, as an arc on 50 mm: both as cut, each over its own mean."""
-        names = [n for n in ("wheel.teeth", "wheel.holes") if self.floor.now(Ref(*n.split("."))) is not None]
-        axis = next(iter(self.route.questions)).about
-        if len(names) < 2:
-            return
+        """Angle from one pattern to another of one body, as an arc on 50 mm: both as cut, each over its own mean."""
+        made = [n for n in ("wheel.teeth", *HOLES) if self.made(n)]
+        for names in combinations(made, 2):
+            if self.frame(names[0]) == self.frame(names[1]):
+                yield self._clock(names)
+
+    def _clock(self, names: tuple[str, str]) -> Asked:
+        axis = next(q.about for q in self.route.questions if self.frame(q.about) == self.frame(names[0]))
         states = [self.state(n) for n in names]
         found = self.value((states[0].clock - states[1].clock) * ANGLE_ARM)
         frame = self.frame(names[0])
         parts = [self._mean_division(s) for s in states]
 
-        def measured(w: World) -> Values:
+        def measured(b: Bench) -> Values:
             means = [
-                float(np.mean(_middles(w, n, axis, frame))) / s.pattern.radius
+                float(np.mean(b.middles(n, axis, frame))) / s.pattern.radius
                 for n, s in zip(names, states, strict=True)
                 if s.pattern is not None
             ]
@@ -190,7 +231,7 @@ class Comparison:
 
         if found is not None:
             found += (parts[0] - parts[1]) * ANGLE_ARM
-        yield Asked("clock of teeth and holes", "clock", None if found is None else np.array([found.real]), measured)
+        return Asked(f"clock of {names[0]} and {names[1]}", "clock", None if found is None else np.array([found.real]), measured)
 
     def _mean_division(self, state: State) -> float:
         assert state.pattern is not None
@@ -198,32 +239,13 @@ class Comparison:
 
     def results(self, rng: np.random.Generator) -> list[Compared]:
         asked = list(self.asked())
-        worlds = [run(self.route), run(self.route.scaled(SHARP)), run(displaced(self.route, rng).scaled(SHARP))]
+        routes = (self.route, self.route.scaled(SHARP), displaced(self.route, rng).scaled(SHARP))
+        benches = [Bench(route) for route in routes]
         found = []
         for one in asked:
-            whole, small, elsewhere = (one.measured(w) for w in worlds)
+            whole, small, elsewhere = (one.measured(b) for b in benches)
             found.append(Compared(one, whole, small / SHARP, elsewhere / SHARP))
         return found
-
-
-def _tooth_arcs(w: World, q: Question, frame: str) -> NDArray[np.float64]:
-    if w.made(q.of).drawn.kind == "holes":
-        return measure.holes(w, q.of, q.about, seen_from=frame).sideways
-    if q.kind.startswith("index"):
-        side = 1 if q.kind == "index ccw" else -1
-        turned = measure.index(w, q.of, q.about, side=side, seen_from=frame)
-        return np.asarray(-turned * w.made(q.of).drawn.radius)
-    got = measure.teeth(w, q.of, q.about, seen_from=frame)
-    return {"gaps": got.gap_centre, "flank ccw": got.flank_ccw, "flank cw": got.flank_cw, "wobble": got.axial}[q.kind]
-
-
-def _middles(w: World, of: str, about: str, frame: str) -> NDArray[np.float64]:
-    """Arcs of the gaps (holes) at their own middles: an oblique gap is clocked there, wherever its mid-plane lies."""
-    drawn = w.made(of).drawn
-    if drawn.kind == "holes":
-        return measure.holes(w, of, about, seen_from=frame).sideways
-    got = measure.teeth(w, of, about, seen_from=frame)
-    return got.gap_centre + np.tan(drawn.lead_angle) * got.axial
 
 
 # -- requirements and how a metrologist measures them --------------------------------------------------------------------
@@ -254,26 +276,26 @@ def _place(route: Route) -> dict[str, object] | None:
     return None
 
 
-Measured = Callable[[World], Values]
+Measured = Callable[[Bench], Values]
 
 
 def _run_out(of: str, about: str, clock: str, frame: str, radius: float) -> Measured:
-    return lambda w: np.array([measure.run_out(w, of, about)])
+    return lambda b: np.array([measure.run_out(b.world, of, about)])
 
 
 def _coaxial(of: str, about: str, clock: str, frame: str, radius: float) -> Measured:
-    def both(w: World) -> Values:
-        drawn = w.made(of).drawn
+    def both(b: Bench) -> Values:
+        drawn = b.world.made(of).drawn
         ends = np.array([[0.0, 0.0, z, 1.0] for z in (drawn.z_from, drawn.z_to)])
         # the heights of the ends in the frame in which the relation is asked
-        heights = [float((w.drawn_between(w.made(of).part, frame) @ end)[2]) for end in ends]
-        return np.array([2.0 * max(abs(measure.offset(w, of, about, at=h, seen_from=frame)) for h in heights)])
+        heights = [float((b.world.drawn_between(b.world.made(of).part, frame) @ end)[2]) for end in ends]
+        return np.array([2.0 * max(abs(measure.offset(b.world, of, about, at=h, seen_from=frame)) for h in heights)])
 
     return both
 
 
 def _face_run_out(of: str, about: str, clock: str, frame: str, radius: float) -> Measured:
-    return lambda w: np.array([measure.face_run_out(w, of, about)])
+    return lambda b: np.array([measure.face_run_out(b.world, of, about)])
 
 
 def _length(of: str, about: str, clock: str, frame: str, radius: float) -> Measured:
@@ -282,8 +304,8 @@ def _length(of: str, about: str, clock: str, frame: str, radius: float) -> Measu
 
 def _range(kind: tuple[str, ...], figure: Callable[[NDArray[np.float64]], float], scale: float) -> object:
     def by(of: str, about: str, clock: str, frame: str, radius: float) -> Measured:
-        def worse(w: World) -> Values:
-            arcs = [_tooth_arcs(w, Question(k, of, about), frame) for k in kind]  # type: ignore[arg-type]
+        def worse(b: Bench) -> Values:
+            arcs = [b.arcs(k, of, about, frame) for k in kind]
             return np.array([max(figure(a) for a in arcs) * (scale / radius if scale else 1.0)])
 
         return worse
@@ -292,27 +314,27 @@ def _range(kind: tuple[str, ...], figure: Callable[[NDArray[np.float64]], float]
 
 
 def _position(of: str, about: str, clock: str, frame: str, radius: float) -> Measured:
-    def largest_vector(w: World) -> Values:
-        got = measure.holes(w, of, about, seen_from=frame)
+    def largest_vector(b: Bench) -> Values:
+        got = measure.holes(b.world, of, about, seen_from=frame)
         turn = np.mean(got.sideways)
         if clock:
-            first = _middles(w, clock, about, frame)[0]
-            turn = first / w.made(clock).drawn.radius * radius
+            first = b.middles(clock, about, frame)[0]
+            turn = first / b.world.made(clock).drawn.radius * radius
         return np.array([2.0 * np.max(np.hypot(got.outward, got.sideways - turn))])
 
     return largest_vector
 
 
 def _chord(of: str, about: str, clock: str, frame: str, radius: float) -> Measured:
-    def worst(w: World) -> Values:
-        chords = measure.holes(w, of, about, seen_from=frame).chords
+    def worst(b: Bench) -> Values:
+        chords = measure.holes(b.world, of, about, seen_from=frame).chords
         return np.array([np.max(np.abs(chords - 2.0 * radius * np.sin(np.pi / len(chords))))])
 
     return worst
 
 
 def _pitch_circle(of: str, about: str, clock: str, frame: str, radius: float) -> Measured:
-    return lambda w: np.array([2.0 * (measure.holes(w, of, about, seen_from=frame).fit_radius - radius)])
+    return lambda b: np.array([2.0 * (measure.holes(b.world, of, about, seen_from=frame).fit_radius - radius)])
 
 
 _FIGURES: dict[str, Callable[[str, str, str, str, float], Measured]] = {

@@ -13,9 +13,6 @@ import math
 
 import numpy as np
 
-from ..rigidbody.machining import run
-from ..rigidbody.measure import answers
-from ..rigidbody.random_routes import LEVER, SHARP, any_route
 from ..rigidbody.route import (
     BoreSquares,
     Centre,
@@ -32,6 +29,7 @@ from ..rigidbody.route import (
     NoStop,
     Offset,
     Part,
+    Pushed,
     RadialDial,
     Route,
     Setup,
@@ -40,6 +38,7 @@ from ..rigidbody.route import (
 )
 
 Rng = np.random.Generator
+HOLES = ("wheel.holes", "spindle.flange")
 JAWS = 4
 WORM_RATIO = 40
 
@@ -77,7 +76,7 @@ class Sayable:
 def sayable(route: Route, rng: Rng) -> Sayable:
     """The route with everything replaced that a job file cannot say."""
     lead = float(rng.uniform(0.01, 0.12)) * (1.0 if rng.random() < 0.5 else -1.0) if rng.random() < 0.4 else 0.0
-    first = {"wheel.holes": float(rng.uniform(-3.0, 3.0)) if rng.random() < 0.5 else 0.0, "wheel.teeth": 0.0}
+    first = {name: float(rng.uniform(-3.0, 3.0)) if rng.random() < 0.5 else 0.0 for name in HOLES}
     parts = tuple(_part(p, lead) for p in route.parts)
     drawn = {f"{p.name}.{s.name}": s for p in parts for s in p.surfaces}
     devices = [cmath.rect(0.02, float(rng.uniform(-3, 3))) for _ in range(2)]
@@ -117,9 +116,10 @@ def _read_by_a_dial(hold: CentredAndSquared | TwoPlanes, rng: Rng) -> CentredAnd
     """Vectors of the machine become readings in a direction of the part."""
 
     def centre(plane: Centre) -> Centre:
-        if not isinstance(plane.by, Offset):
+        if isinstance(plane.by, RadialDial):
             return plane
-        return dataclasses.replace(plane, by=RadialDial(2.0 * abs(plane.by.vector), float(rng.uniform(-3, 3))))
+        fim = plane.by.clearance if isinstance(plane.by, Pushed) else 2.0 * abs(plane.by.vector)
+        return dataclasses.replace(plane, by=RadialDial(fim, float(rng.uniform(-3, 3))))
 
     if isinstance(hold, TwoPlanes):
         return TwoPlanes(centre(hold.first), centre(hold.second))
@@ -169,10 +169,9 @@ def _cut(
         step=same_setup[0] if same_setup else float(rng.uniform(1e-4, 3e-4)) if rng.random() < 0.2 else 0.0,
     )
     divisions[op, cut.surface] = how
-    start, errors = first[cut.surface], how.errors(n)
     if isinstance(cut, CutTeeth):
-        return dataclasses.replace(cut, division=errors, width_change=(), first_at=start)
-    return dataclasses.replace(cut, division=errors, first_at=start)
+        return dataclasses.replace(cut, division=how.errors(n), width_change=(), first_at=0.0)
+    return dataclasses.replace(cut, division=how.errors(n), first_at=first[cut.surface])
 
 
 def _join(join: Join, drawn: dict[str, Surface]) -> Join:
@@ -224,23 +223,3 @@ def displaced(route: Route, rng: Rng) -> Route:
         return dataclasses.replace(one, stop=stop, clock=clock)
 
     return dataclasses.replace(route, parts=tuple(map(part, route.parts)), steps=tuple(map(step, route.steps)))
-
-
-def second_order(route: Route) -> float:
-    """As random_routes.second_order, infinite where a hold does not settle."""
-    try:
-        whole, small = answers(run(route), route), answers(run(route.scaled(SHARP)), route)
-    except ArithmeticError:
-        return math.inf
-    return max(
-        float(np.max(np.abs(whole[q] - small[q] / SHARP))) * LEVER.get(q.kind, 1.0) / (1.0 - SHARP)
-        for q in route.questions
-    )
-
-
-def sayable_route(rng: Rng, *, limit: float = 2e-4) -> Sayable:
-    """A random sayable route whose second-order terms stay below `limit` [mm]."""
-    while True:
-        found = sayable(any_route(rng), rng)
-        if second_order(found.route) <= limit:
-            return found

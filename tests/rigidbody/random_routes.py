@@ -163,6 +163,7 @@ def _spindle(rng: Rng) -> Part:
         face("shoulder", 0.0, +1, 60.0),
         face("tip", 90.0, +1, 25.0),
         face("tail", -long - 5.0, -1, 40.0),
+        holes("flange", int(rng.integers(3, 9)), float(rng.uniform(18.0, 26.0)), z=-2.0),
     )
     there = (
         Existing("bearings", offset=_vector(rng, 1, 20), lean=_slope(rng, 1e-4)),
@@ -358,12 +359,13 @@ def _attempt(rng: Rng) -> Route | None:
     surfaces = {f"{p.name}.{s.name}": s for p in parts for s in p.surfaces}
     shop = _Shop(rng, surfaces, [f"{p.name}.{e.surface}" for p in parts for e in p.existing])
     of_wheel = [n for n in surfaces if n.startswith("wheel.") and n not in ("wheel.bar", "wheel.sawn")]
+    of_spindle = ["spindle.journal", "spindle.end", "spindle.tip", "spindle.flange"]
     steps: list[Setup | Join] = []
     total = int(rng.integers(2, 7))
     after = int(rng.integers(0, min(3, total))) if two else 0
     for k in range(total - after):
         if two and k == 1 and _either(rng, 0.4):
-            setup = _setup(shop, 10 * k + 10, "spindle", ["spindle.journal", "spindle.end", "spindle.tip"], ("spindle",))
+            setup = _setup(shop, 10 * k + 10, "spindle", of_spindle, ("spindle",))
         else:
             setup = _setup(shop, 10 * k + 10, "wheel", of_wheel, ("wheel",))
         if setup is None:
@@ -376,7 +378,7 @@ def _attempt(rng: Rng) -> Route | None:
         steps.append(join)
         for _ in range(after):
             part = _pick(rng, ["wheel", "spindle"])
-            setup = _setup(shop, 10 * len(steps) + 10, part, [*of_wheel, "spindle.tip"], ("wheel", "spindle"))
+            setup = _setup(shop, 10 * len(steps) + 10, part, [*of_wheel, "spindle.tip", "spindle.flange"], ("wheel", "spindle"))
             if setup is None:
                 return None
             steps.append(setup)
