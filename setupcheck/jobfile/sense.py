@@ -243,6 +243,8 @@ def _require(i: int, asked: Require) -> Iterator[Miss]:
             yield Miss(path, f"{asked.what} is a share of the whole. Write 100 % or less")
     if asked.at_most is not None and asked.at_least is not None and asked.at_least.value > asked.at_most.value:
         yield Miss(("require", i, "at_least"), "at_least is above at_most. Write between: [low, high]")
+    if asked.grade is not None and asked.of is None:
+        yield Miss(("require", i, "grade"), "a grade needs the teeth it speaks of. Write of: wheel.teeth")
     if asked.of is not None and asked.of == asked.about:
         yield Miss(("require", i, "about"), f"{asked.of} about itself is always zero. Write the surface it refers to")
 

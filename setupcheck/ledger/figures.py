@@ -191,8 +191,9 @@ class MidPlane:
 
     def sample(self, draws: Draws) -> Reals:
         axial, lean = draws.real(self.axial), draws.account(self.lean)
-        wobble = self.pattern.radius * teeth.waves(lean, teeth.angles(self.pattern))
-        return np.asarray(np.maximum(np.abs(axial - wobble.max(axis=1)), np.abs(axial - wobble.min(axis=1))))
+        low, high = teeth.wave_ends(lean, teeth.angles(self.pattern))
+        r = self.pattern.radius
+        return np.asarray(np.maximum(np.abs(axial - r * high), np.abs(axial - r * low)))
 
 
 @dataclass(frozen=True, slots=True, eq=False)

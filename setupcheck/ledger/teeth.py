@@ -85,7 +85,7 @@ def division_arcs(
     """Arc errors r Delta_j of all places for all trials [mm], shape (trials, count), places lying apart in memory.
 
     index_waves  one array (trials,) per `pattern.periodic`; drifts one array (trials,) per `pattern.drift` [rad]
-    each         per-place scatters, arrays (trials, count), already as arcs [mm]
+    each         per-place scatters, arrays (trials, count), already as arcs [mm]; the first is used up as the sum
     """
     theta = 2.0 * np.pi * np.arange(pattern.count) / pattern.count
     shapes: list[Reals] = [np.zeros(pattern.count)]
@@ -101,9 +101,11 @@ def division_arcs(
         values.append(np.ones(trials))
     basis = (np.stack(shapes, axis=1) * (pattern.radius * pattern.turn)).astype(np.float32)
     parts = np.stack(values).astype(np.float32)
-    arcs = np.zeros((pattern.count, trials), dtype=np.float32)
-    for scatter in each:
-        arcs += scatter.T if pattern.turn > 0 else -scatter.T
+    arcs = each[0].T if each else np.zeros((pattern.count, trials), dtype=np.float32)
+    for scatter in each[1:]:
+        arcs += scatter.T
+    if pattern.turn < 0:
+        np.negative(arcs, out=arcs)
     block = max(1, BLOCK // pattern.count)
     for start in range(0, trials, block):
         arcs[:, start : start + block] += basis @ parts[:, start : start + block]
@@ -115,6 +117,17 @@ def waves(vectors: Complexes, at: Reals) -> Reals:
     basis = np.stack([np.cos(at), np.sin(at)], axis=1).astype(np.float32)
     parts = np.stack([vectors.real, vectors.imag]).astype(np.float32)
     return np.asarray((basis @ parts).T)
+
+
+def wave_ends(vectors: Complexes, at: Reals) -> tuple[Reals, Reals]:
+    """Lowest and highest of Re(X exp(-i theta)) over the angles, each of shape (len(vectors),)."""
+    low, high = np.empty(len(vectors), np.float32), np.empty(len(vectors), np.float32)
+    block = max(1, BLOCK // len(at))
+    for start in range(0, len(vectors), block):
+        now = slice(start, start + block)
+        part = waves(vectors[now], at)
+        low[now], high[now] = part.min(axis=1), part.max(axis=1)
+    return low, high
 
 
 def flank_arcs(offset: Complexes, pattern: Pattern, arcs: Reals, *, side: int, driven: bool = False) -> Reals:

@@ -91,6 +91,10 @@ def test_a_pitch_figure_of_a_single_slot_is_refused() -> None:
     assert ["ring.slot is a single slot, which has no gap-centre-pitch"] == problems(with_surfaces(slot) + asked)
 
 
+def test_a_grade_of_no_teeth_is_refused() -> None:
+    assert ["a grade needs the teeth it speaks of"] == problems(RING + "  - {what: single-pitch, grade: 6}\n")
+
+
 def test_limits_from_above_to_below_are_refused() -> None:
     assert ["at_least is above at_most"] == problems(spoilt("at_most: 90 um", "at_most: 90 um, at_least: 95 um"))
 

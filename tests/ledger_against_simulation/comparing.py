@@ -24,7 +24,7 @@ from setupcheck.quantities.stacks import Built, build
 from ..rigidbody import measure
 from ..rigidbody.machining import run
 from ..rigidbody.random_routes import SHARP
-from ..rigidbody.route import Question, Route
+from ..rigidbody.route import Question, Route, Setup
 from .as_job import AsJob, as_job
 from .sayable import HOLES, Sayable, displaced
 from .told import Told, value
@@ -102,16 +102,13 @@ class Comparison:
 
     def __init__(self, given: Sayable) -> None:
         self.given, self.route = given, given.route
+        self.bench = Bench(given.route)
         self.require = list(_requirements(given.route))
-        place = _place(given.route)
-        self.job: AsJob = as_job(given, self.require, place)
+        self.place = self._place()
+        self.job: AsJob = as_job(given, self.require, self.place)
         self.loaded = read_job_text(self.job.text, "random.yaml")
         self.floor: Floor = walk(self.loaded)
         self.told = Told(self.job.truth)
-
-    def made(self, name: str) -> bool:
-        part, _, surface = name.partition(".")
-        return part in self.floor.bodies and self.floor.now(Ref(part, surface)) is not None
 
     def state(self, name: str) -> State:
         part, _, surface = name.partition(".")
@@ -127,14 +124,34 @@ class Comparison:
 
     def asked(self) -> Iterator[Asked]:
         for question in self.route.questions:
+            if self._loses_its_phase(question.of):
+                continue
             found = self._account(question)
             if found is not None:
                 yield found
             elif question.kind not in ("run-out", "face run-out"):
                 yield self._teeth(question)
         for index, require in enumerate(self.require):
-            yield self._required(index, require)
+            if not self._loses_its_phase(str(require["of"])):
+                yield self._required(index, require)
         yield from self._clocks()
+
+    def _place(self) -> dict[str, dict[str, object]] | None:
+        """A worm axis just where the teeth are drawn, given from some face of the same body."""
+        world, faces = self.bench.world, [q.of for q in self.route.questions if q.kind == "face run-out"]
+        teeth_made = [q for q in self.route.questions if q.of == "wheel.teeth"]
+        face = next((f for f in faces if world.together[f.partition(".")[0]] == world.together["wheel"]), None)
+        if not teeth_made or face is None:
+            return None
+        frame, drawn = face.partition(".")[0], self.route.surface(face)
+        away = drawn.facing * measure.drawn_length(world, "wheel.teeth", face, seen_from=frame)
+        for about in dict.fromkeys(q.about for q in teeth_made):
+            self.require.append({"what": "mid-plane", "of": "wheel.teeth", "about": about, "at_most": "5 mm"})
+        return {"worm_axis": {"from": face, "length": {"measured": f"{away:.15f} mm"}}}
+
+    def _loses_its_phase(self, of: str) -> bool:
+        """Where a mounting angle is not said, the errors of an inner part are turned by it but its holes are not."""
+        return not self.given.mounting_said and of == "spindle.flange"
 
     def _account(self, q: Question) -> Asked | None:
         if q.kind not in ("offset", "lean", "length"):
@@ -188,7 +205,7 @@ class Comparison:
     def _tooth_figure(self, q: Question) -> Tooth | None:
         """The figure the package builds for the gap centres, None where it is open."""
         wanted = ("gap-centre-pitch", q.of, q.about)
-        index = next(i for i, r in enumerate(self.require) if (r["what"], r["of"], r["about"]) == wanted)
+        index = next(i for i, r in enumerate(self.require) if (r["what"], r["of"], r.get("about")) == wanted)
         found = build(self.floor, read_stack(self.floor, index))
         return found.figure if isinstance(found, Built) and isinstance(found.figure, Tooth) else None
 
@@ -199,7 +216,13 @@ class Comparison:
         frame = self.frame(of)
         drawn = self.route.surface(of)
         scale = ANGLE_ARM if what == "index-range" else 1.0
-        measured = _FIGURES[what](of, about, str(require.get("clock", "")), frame, drawn.radius)
+        also = str(require.get("clock", ""))
+        if what == "allowance":
+            also = f"{of.partition('@')[0]}@{_cut_again(self.route)[of.partition('@')[0]][-2]}"
+        if what == "mid-plane":
+            assert self.place is not None
+            also = str(self.place["worm_axis"]["from"])
+        measured = _FIGURES[what](of, about, also, frame, drawn.radius)
         return Asked(
             f"require {what} of {of} about {about} {require.get('clock', '')}",
             what,
@@ -209,7 +232,7 @@ class Comparison:
 
     def _clocks(self) -> Iterator[Asked]:
         """Angle from one pattern to another of one body, as an arc on 50 mm: both as cut, each over its own mean."""
-        made = [n for n in ("wheel.teeth", *HOLES) if self.made(n)]
+        made = [n for n in ("wheel.teeth", *HOLES) if n in self.bench.world.states]
         for names in combinations(made, 2):
             if self.frame(names[0]) == self.frame(names[1]):
                 yield self._clock(names)
@@ -239,12 +262,12 @@ class Comparison:
 
     def results(self, rng: np.random.Generator) -> list[Compared]:
         asked = list(self.asked())
-        routes = (self.route, self.route.scaled(SHARP), displaced(self.route, rng).scaled(SHARP))
-        benches = [Bench(route) for route in routes]
+        small, elsewhere = self.route.scaled(SHARP), displaced(self.route, rng).scaled(SHARP)
+        benches = (self.bench, Bench(small), Bench(elsewhere))
         found = []
         for one in asked:
-            whole, small, elsewhere = (one.measured(b) for b in benches)
-            found.append(Compared(one, whole, small / SHARP, elsewhere / SHARP))
+            whole, sharp, other = (one.measured(b) for b in benches)
+            found.append(Compared(one, whole, sharp / SHARP, other / SHARP))
         return found
 
 
@@ -253,6 +276,8 @@ class Comparison:
 
 def _requirements(route: Route) -> Iterator[dict[str, object]]:
     limit = {"at_most": "5 mm"}
+    for name, ops in _cut_again(route).items():
+        yield {"what": "allowance", "of": f"{name}@{ops[-1]}", "at_least": "-1 mm"}
     for q in route.questions:
         if q.kind == "run-out":
             yield {"what": "run-out", "of": q.of, "about": q.about, "at": route.surface(q.of).mid, **limit}
@@ -272,8 +297,13 @@ def _requirements(route: Route) -> Iterator[dict[str, object]]:
             yield {"what": "pitch-circle", "of": q.of, "about": q.about, **limit}
 
 
-def _place(route: Route) -> dict[str, object] | None:
-    return None
+def _cut_again(route: Route) -> dict[str, list[int]]:
+    """Round surfaces with an earlier state, and the operations that made them (0: bought)."""
+    made: dict[str, list[int]] = {f"{p.name}.{e.surface}": [0] for p in route.parts for e in p.existing}
+    for step in route.steps:
+        for cut in step.cuts if isinstance(step, Setup) else ():
+            made.setdefault(cut.surface, []).append(step.op)
+    return {n: ops for n, ops in made.items() if len(ops) > 1 and route.surface(n).kind in ("cylinder", "bore")}
 
 
 Measured = Callable[[Bench], Values]
@@ -337,6 +367,26 @@ def _pitch_circle(of: str, about: str, clock: str, frame: str, radius: float) ->
     return lambda b: np.array([2.0 * (measure.holes(b.world, of, about, seen_from=frame).fit_radius - radius)])
 
 
+def _mid_plane(of: str, about: str, face: str, frame: str, radius: float) -> Measured:
+    def worst(b: Bench) -> Values:
+        away = b.arcs("wobble", of, about, frame) - measure.height(b.world, face, about, seen_from=frame)
+        return np.array([np.max(np.abs(away))])
+
+    return worst
+
+
+def _allowance(of: str, about: str, before: str, frame: str, radius: float) -> Measured:
+    """Stock between two states drawn alike: less than nothing by as much as they miss each other."""
+
+    def least(b: Bench) -> Values:
+        new, old = b.world.made(of), b.world.made(before)
+        ends = np.array([[0.0, 0.0, z, 1.0] for z in (new.drawn.z_from, new.drawn.z_to)])
+        heights = [float((b.world.drawn_between(old.part, frame) @ end)[2]) for end in ends]
+        return np.array([-max(abs(measure.offset(b.world, of, before, at=h, seen_from=frame)) for h in heights)])
+
+    return least
+
+
 _FIGURES: dict[str, Callable[[str, str, str, str, float], Measured]] = {
     "run-out": _run_out,
     "coaxial": _coaxial,
@@ -348,4 +398,6 @@ _FIGURES: dict[str, Callable[[str, str, str, str, float], Measured]] = {
     "position": _position,
     "chord": _chord,
     "pitch-circle": _pitch_circle,
+    "mid-plane": _mid_plane,
+    "allowance": _allowance,
 }
