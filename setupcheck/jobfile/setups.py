@@ -61,10 +61,15 @@ Device = Literal[
 
 
 class Through(Shop):
-    """One device that stands on another, with its own error: `through: [{by: centres, runout: 4 um}]`."""
+    """One device that stands on another, with its own error: `through: [{by: centres, runout: 4 um}]`, or `[centres]`."""
 
     by: str
     runout: RunOut | None = None
+
+    @model_validator(mode="before")
+    @classmethod
+    def a_plain_name_takes_its_typical_error(cls, given: object) -> object:
+        return {"by": given, "runout": {"device": given}} if isinstance(given, str) else given
 
 
 class Span(Shop):
@@ -155,6 +160,19 @@ class Hold(Shop):
     square: Square | None = None
     stop: Stop | None = None
     clock: Clock | None = None
+
+    @model_validator(mode="before")
+    @classmethod
+    def the_second_plane_lies_in_the_same_device(cls, given: object) -> object:
+        if (
+            isinstance(given, dict)
+            and isinstance(given.get("centre"), dict)
+            and isinstance(given.get("and_centre"), dict)
+        ):
+            device = given["centre"].get("by")
+            if device is not None and "by" not in given["and_centre"]:
+                return {**given, "and_centre": {**given["and_centre"], "by": device}}
+        return given
 
 
 class MidPlane(Shop):

@@ -88,7 +88,8 @@ class Quantity:
     unit     display unit ("" for texts; "stack" where the instance says it);  digits  decimals shown
     of       pure function of the inputs; may return a value, Known, Open or None
     inputs   argument -> another quantity ("route.floor"); an entry of this thing (":circle", ":" for its record);
-             its own name ("@key", "@path"); every instance ("each …"), or those that have a value ("known …")
+             its own name ("@key", "@path"); every instance ("each …"), or those that have a value ("known …");
+             one that may be open without making this one open ("settled …": None then)
     says     one line for people
     if_none  value of an argument when the job has no such thing
     """
@@ -130,6 +131,9 @@ class Book:
             return _entry(at, name[1:])
         if name.startswith("@"):
             return Known(getattr(at, name[1:]))
+        if name.startswith("settled "):
+            answer = self.get(name[8:], at)
+            return answer if isinstance(answer, Known) else None
         if name.startswith("known "):
             inner = name[6:]
             answers = [self.get(inner, s) for s in self.instances(self.quantities[inner].per)]

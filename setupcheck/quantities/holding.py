@@ -48,10 +48,7 @@ class Held:
 
     def of_part(self, angle: float) -> Towards:
         """A direction counted from the held part's own mark, in the frame of its body."""
-        mark = self.floor.mark(self.part)
-        if mark is None:
-            return Towards()
-        return Towards(self.floor.sense(self.part) * angle + mark, why="known")
+        return self.floor.in_body(self.part, Towards(angle, why="known"))
 
     def ref(self, text: str) -> Ref:
         own = self.setup.part or (self.part if "." not in text and text.partition("@")[0] in self._own() else None)

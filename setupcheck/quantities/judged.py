@@ -99,9 +99,9 @@ def lowest(result: Result) -> float | None:
     return result.combined.worst.low if result.stack.low is not None else None
 
 
-def low_limit(stack: Stack) -> float | None:
-    """Lower limit of the requirement. Source: the job file."""
-    return stack.low
+def low_limit(stack: Stack, result: Result | None) -> float | None:
+    """Lower limit of the requirement; None where the upper one already says that nothing can be told. Source: the job file."""
+    return stack.low if result is not None or stack.high is None else None
 
 
 def rss(result: Result) -> float:

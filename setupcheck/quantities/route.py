@@ -249,7 +249,7 @@ def _join(floor: Floor, setup: Setup, join: Join) -> None:
         moved(shoulder, still, still, still) if shoulder is not None else None,
     )
     level = moved(journal, still, lean, still)
-    offset = bore.axis_at(bore.z) - _fit_error(op, join, bore) - level.axis_at(bore.z)
+    offset = bore.axis_at(bore.z) - _fit_error(floor, op, join, bore) - level.axis_at(bore.z)
     axial = Account.of(
         Cause(f"op {op}: where the joint is stopped", "undetermined", op, missing=f"setups.{op}.join.stop")
     ).along(1)
@@ -347,7 +347,7 @@ def _joint_lean(
     return Account.of(Cause(f"op {op}: how the joint leans", "undetermined", op, missing=missing))
 
 
-def _fit_error(op: int, join: Join, bore: State) -> Account:
+def _fit_error(floor: Floor, op: int, join: Join, bore: State) -> Account:
     """epsilon of a joint: none for an interference fit, the play of a sliding one, or what the planner states."""
     total, path = Account(), f"setups.{op}.join"
     name = f"op {op}, {bore.name} on its seat"
@@ -360,7 +360,7 @@ def _fit_error(op: int, join: Join, bore: State) -> Account:
             join.fit_error,
             Entry(f"{name}: run-out", op, f"{path}.fit_error", join.by),
             inside=True,
-            towards=stated_direction(join.fit_error.high_at if join.fit_error is not None else None),
+            towards=floor.in_body(bore.part, stated_direction(join.fit_error.high_at if join.fit_error else None)),
             turned=Turned(),
         )
     return total

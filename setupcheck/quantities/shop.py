@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass, field
+from dataclasses import dataclass, field, replace
 
 from setupcheck.errors import JobError, Problem
 from setupcheck.jobfile.models import Flat, Pattern, Round, Surface, Throat, Toothing
@@ -11,6 +11,7 @@ from setupcheck.jobfile.reading import LoadedJob
 from setupcheck.ledger import route
 from setupcheck.ledger.causes import Cause
 from setupcheck.ledger.route import Placing, State
+from setupcheck.quantities.causes import Towards
 
 
 @dataclass(frozen=True, slots=True)
@@ -68,6 +69,13 @@ class Floor:
     def mark(self, part: str) -> float | None:
         """Where a part's mark stands in its body's frame [rad]; None where nobody recorded how it was mounted."""
         return self.marks.get(part, 0.0)
+
+    def in_body(self, part: str, towards: Towards) -> Towards:
+        """A direction counted from a part's own mark, in the frame of its body; unknown where its mounting is not."""
+        mark = self.mark(part)
+        if towards.angle is None or mark is None:
+            return Towards()
+        return replace(towards, angle=self.sense(part) * towards.angle + mark)
 
     def body(self, part: str) -> Body:
         return self.bodies[part]

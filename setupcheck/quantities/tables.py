@@ -52,7 +52,16 @@ STACK = (
         {"result": "stack.combined"},
         "worst case towards the lower limit",
     ),
-    Quantity("stack.floor", "stack", "stack", 1, judged.low_limit, {"stack": ":"}, "lower limit"),
+    Quantity(
+        "stack.floor",
+        "stack",
+        "stack",
+        1,
+        judged.low_limit,
+        {"stack": ":", "result": "settled stack.combined"},
+        "lower limit",
+        {"result": None},
+    ),
     Quantity(
         "stack.rss",
         "stack",
@@ -92,7 +101,7 @@ STACK = (
         "%",
         2,
         judged.second_order,
-        {"built": "stack.built", "stack": ":"},
+        {"built": "settled stack.built", "stack": ":"},
         "what the first-order treatment leaves out, as a share of the limit",
     ),
 )

@@ -13,7 +13,9 @@ STACK_RULES = ("STACK-001", "STACK-002")
 
 
 def remedy_in_words(found: Review, finding: Finding) -> str:
-    """What to do about a finding."""
+    """What to do about a finding; of an open one, what to fill."""
+    if finding.verdict == "open":
+        return ""
     if finding.rule in STACK_RULES and finding.key in found.remedies:
         return _worked_out(found.remedies[finding.key], inches=found.book.inches) or finding.remedy
     return finding.remedy

@@ -117,6 +117,8 @@ def _finding(found: Review, finding: Finding) -> Iterator[str]:
         yield from wrap(f"By {clean(finding.house)}", first="      ", rest="      ")
     if finding.waiver:
         yield from wrap(f"Waived: {clean(finding.waiver)}", first="      ", rest="      ")
+    if finding.verdict == "open":
+        return
     told = [f"{s.ref}, {s.place} ({s.kind})" if s.place else f"{s.ref} ({s.kind})" for s in finding.sources]
     yield from wrap("Source: " + "; ".join(told), first="      ", rest="          ")
 
@@ -159,6 +161,8 @@ def title_of(scope: Scope) -> str:
     if stack.require.name:
         return clean(stack.require.name)
     of, about = stack.of.rpartition(".")[2], stack.about.rpartition(".")[2]
+    if stack.require.what == "torque":
+        return f"torque of the joint in op {stack.of}" if stack.of else "torque"
     silent = stack.require.what in ("allowance", "chord", "pitch-circle", "torque") or not about
     return f"{stack.require.what} at {of or 'the mesh'}" + ("" if silent else f" about {about}")
 
@@ -218,7 +222,7 @@ def _statistics(result: Result, unit: str, digits: int, confidence: float) -> st
         rss = f"{in_unit(c.rss.low, unit, digits)} to {show(c.rss.high, unit, digits)}"
     text = f"Of {TRIALS:,} draws {likely}; rss {rss}"
     if c.chance is not None and c.chance < 1.0 and c.chance_error is not None:
-        text += f"; chance of meeting it {c.chance * 100:.1f} ± {c.chance_error * 100:.1f} %"
+        text += f"; chance of meeting it {c.chance * 100:.2f} ± {c.chance_error * 100:.2f} %"
     return text + "."
 
 
@@ -237,7 +241,7 @@ def _gate(gate: Gate, *, inches: bool) -> Iterator[str]:
     assert gate.reading is not None
     planned = show(gate.planned, unit, digits)
     if gate.reading <= 0.0:
-        text = f"op {gate.op}, {dial} on {gate.on}: no reading will do ({planned} planned); {gate.by} fails even so"
+        text = f"op {gate.op}, {dial} on {gate.on}: no reading alone brings {gate.by} inside ({planned} planned)"
     else:
         text = f"op {gate.op}, {dial} on {gate.on}: up to {show(gate.reading, unit, digits)} ({planned} planned), set by {gate.by}"
     yield from wrap(text, first="  ", rest="      ")

@@ -101,7 +101,9 @@ class Writer:
     def __init__(self, given: Sayable) -> None:
         self.given, self.route = given, given.route
         self.truth = Truth()
-        self.joins: dict[str, tuple[float, int, float]] = {}  # inner -> height, way, mark of the outer in the inner
+        self.heights: dict[str, tuple[float, int]] = {}  # of the wheel in the spindle: height, way
+        # where a part lies in its body: the body, its way round, the direction of its mark there
+        self.lying = {part.name: (part.name, 1, 0.0) for part in given.route.parts}
 
     def text(self, require: list[Node], place: Node | None = None) -> str:
         job: Node = {"setupcheck": 1, "title": "random route", "units": "mm", "parts": self._parts()}
@@ -250,8 +252,13 @@ class Writer:
     def _join(self, join: Join) -> Node:
         shoulder, face = self.route.surface(join.seat.against), self.route.surface(join.seat.on)
         inner = join.inner.partition(".")[0]
-        height = shoulder.mid + shoulder.facing * join.seat.spacer - join.way * face.mid
-        self.joins[inner] = (height, join.way, join.insertion)
+        outer = join.outer.partition(".")[0]
+        # a play is read on the bore, in a direction of the part that has it
+        play = _into_outer(join.way, join.insertion, join.offset)
+        if outer == "wheel":
+            height = shoulder.mid + shoulder.facing * join.seat.spacer - join.way * face.mid
+            self.heights["spindle"] = (height, join.way)
+        self._lies(outer, inner, join)
         told = {"mounted_at": deg(join.insertion)} if self.given.mounting_said else {}
         if not self.given.mounting_said:
             # direction 0 of the inner part in the outer's frame: a unit vector turned by the mounting
@@ -267,7 +274,6 @@ class Writer:
         self.truth.values[f"setups.{join.op}.join.stop.spacers.0.length", ""] = complex(join.seat.spacer_error)
         if not join.offset:
             return {"op": join.op, "join": node | {"by": "shrink"}}
-        play = _into_outer(join.way, join.insertion, join.offset)  # bore minus journal, seen from the bore's part
         node |= {"by": "bond", "fit_error": reading(play, sign=-1.0, per=0.5)}
         return {"op": join.op, "join": node}
 
@@ -278,7 +284,7 @@ class Writer:
         part = on.partition(".")[0]
         if part == frame:
             return z
-        height, way, _ = self.joins["spindle"]  # z of the spindle = height + way z of the wheel
+        height, way = self.heights["spindle"]  # z of the spindle = height + way z of the wheel
         return (z - height) / way if part == "wheel" else height + way * z
 
     def _into_body(self, setup: Setup, vector: complex) -> complex:
@@ -289,10 +295,22 @@ class Writer:
             # the bound of an inner part is not turned with it, for any direction is as good: tell it turned
             join = next(s for s in self.route.steps if isinstance(s, Join))
             return own * cmath.exp(-1j * join.insertion)
-        if setup.part not in self.joins:
-            return own
-        _, way, insertion = self.joins[setup.part]
-        return _into_outer(way, insertion, own)
+        _, way, mark = self.lying[setup.part]
+        return cmath.exp(1j * mark) * (own if way > 0 else own.conjugate())
+
+    def _lies(self, outer: str, inner: str, join: Join) -> None:
+        """After a joint all of the inner body lies in the outer's."""
+        body, way, mark = self.lying[outer]
+        left, inner_way, inner_mark = self.lying[inner]
+        # direction d of the inner part is way_j (d - insertion) of the outer part, and way (that) + mark of its body
+        for part, (there, own_way, own_mark) in list(self.lying.items()):
+            if there == left:
+                turned = inner_way * (own_mark - inner_mark)  # of the part's mark, in the inner part
+                self.lying[part] = (
+                    body,
+                    way * join.way * inner_way * own_way,
+                    way * join.way * (turned - join.insertion) + mark,
+                )
 
 
 def _into_outer(way: int, insertion: float, vector: complex) -> complex:

@@ -150,8 +150,9 @@ class Comparison:
         return {"worm_axis": {"from": face, "length": {"measured": f"{away:.15f} mm"}}}
 
     def _loses_its_phase(self, of: str) -> bool:
-        """Where a mounting angle is not said, the errors of an inner part are turned by it but its holes are not."""
-        return not self.given.mounting_said and of == "spindle.flange"
+        """Where a mounting angle is not said, errors of the inner part are told as turned by it; its holes, and the
+        stock of cuts before the joint, are not turned."""
+        return not self.given.mounting_said and (of == "spindle.flange" or (of.startswith("spindle.") and "@" in of))
 
     def _account(self, q: Question) -> Asked | None:
         if q.kind not in ("offset", "lean", "length"):
