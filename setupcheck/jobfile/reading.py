@@ -101,8 +101,13 @@ def read_job_text(text: str, file: str) -> LoadedJob:
         place = tree.key_place(miss.path) if miss.key else tree.place(miss.path)
         problems.append(_at(place, tree.dotted(miss.path), miss.message))
     if problems or tree.problems or job is None:
-        raise JobError(file, tree.lines, tree.together(problems))
+        raise JobError(file, tree.lines, tree.together(p for p in problems if not _behind_comma(p, tree)))
     return LoadedJob(job, tree, Path(file).name, hashlib.sha256(text.encode()).hexdigest())
+
+
+def _behind_comma(problem: Problem, tree: Tree) -> bool:
+    """A problem inside a piece of text that is told as a whole: the `5 um` of `2,5 um` is no key."""
+    return any(p.line == problem.line and p.column < problem.column < p.column + p.length for p in tree.problems)
 
 
 def _contradictions(data: Mapping[str, Data], job: Job | None) -> Iterator[names.Miss]:

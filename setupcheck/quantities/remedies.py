@@ -120,6 +120,8 @@ def _cut_back(loaded: LoadedJob, result: Result, *, most: int) -> tuple[Change, 
 
 def _swaps(loaded: LoadedJob, result: Result) -> Iterator[Swap]:
     """Datums that other operations of this stack are held on, tried at the hold of its biggest cause."""
+    if not result.combined.shares:
+        return
     biggest = result.combined.shares[0].cause
     setup = next((s for s in loaded.job.setups if s.op == biggest.op), None)
     centre = setup.hold.centre if setup is not None and setup.hold is not None else None

@@ -275,6 +275,8 @@ def _length(floor: Floor, stack: Stack) -> Built | Open:
 
 def _allowance(floor: Floor, stack: Stack) -> Built | Open:
     """Radial stock left where the cut is thinnest."""
+    if not stack.of:
+        return Open((f"require.{stack.index}.of",))
     ref = floor.loaded.ref(stack.of)
     ops = [
         int(key.partition("/")[0])

@@ -149,7 +149,7 @@ def _combined(result: Result, unit: str) -> dict[str, object]:
         "chance_error": _number(c.chance_error) if c.chance_error is not None else None,
         "causes": [
             {
-                "cause": s.cause.key,
+                "cause": clean(s.cause.key),
                 "op": s.cause.op,
                 "mode": s.cause.mode,
                 "worst": _shown(s.worst, unit),

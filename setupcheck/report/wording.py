@@ -34,9 +34,14 @@ def finer(unit: str, *, inches: bool) -> tuple[str, int]:
 
 
 def wrap(text: str, *, first: str = "", rest: str = "") -> list[str]:
-    """Lines of at most 80 columns."""
+    """Lines of at most 80 columns, everything a terminal would obey taken out."""
     return textwrap.wrap(
-        text, WIDTH, initial_indent=first, subsequent_indent=rest, break_long_words=False, break_on_hyphens=False
+        clean(text),
+        WIDTH,
+        initial_indent=first,
+        subsequent_indent=rest,
+        break_long_words=False,
+        break_on_hyphens=False,
     ) or [first.rstrip()]
 
 

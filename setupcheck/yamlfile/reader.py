@@ -213,7 +213,7 @@ class _Walk:
                 f"the colon in '{_short(word)}' has no space behind it",
                 f"Write {_short(word.replace(':', ': ', 1))}",
             )
-        holder.twice = word in holder.data
+        holder.twice = behind_comma or word in holder.data  # either way its value is not taken
         if holder.twice and not behind_comma:
             first = holder.node.inside[word].key_place.line
             where = "twice in this line" if first == place.line else f"twice, in line {first} and in line {place.line}"

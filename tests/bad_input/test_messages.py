@@ -38,7 +38,7 @@ def test_five_mistakes_in_different_places_are_told_in_one_run_and_in_the_order_
     text = RING
     for old, new in (
         ('at_most: 400"', "at_most: 400 um"),  # a limit in the wrong kind of unit
-        ("runout: 3 um", "runout: 3"),  # an error without unit
+        ("runout: 3 um", "runout: 2,5 um"),  # a decimal comma
         ("machine: head-B", "machine: head-C"),  # an unknown name
         ("worm_ratio: 40", "worm_ration: 40"),  # a mistyped key
         ("diameter: 32 H7", "diameter: 55 H7"),  # a bore larger than the hub

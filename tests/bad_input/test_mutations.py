@@ -77,6 +77,8 @@ def test_a_spoilt_job_is_reviewed_or_refused_in_words(text: str) -> None:
 PLATE = next(text for text in JOBS if "Index plate" in text)
 ONCE_BROKEN = {
     "an allowance of no surface": RING + "  - {what: allowance, at_least: 0.1 mm}\n",
+    "a failing length that has no cause": RING
+    + "  - {what: length, of: ring.back, about: ring.back@20, between: [1 mm, 2 mm]}\n",
     "a grade of no teeth": RING + "  - {what: single-pitch, grade: 6}\n",
     "a pitch figure of a single slot": PLATE.replace("gap-centre-pitch, of: plate.holes", "gap-centre-pitch, of: slot"),
     "a cutter named by a number": RING.replace("{teeth: {error: 20 um}", "{teeth: {error: 20 um, cutter: 30}"),

@@ -29,7 +29,6 @@ from ..rigidbody.route import (
     Join,
     Lean,
     NoStop,
-    Offset,
     Part,
     PointStop,
     Pushed,
@@ -362,4 +361,3 @@ def as_job(given: Sayable, require: list[Node], place: Node | None = None) -> As
     writer = Writer(given)
     text = writer.text(require, place)
     return AsJob(text, writer.truth)
-

@@ -255,7 +255,9 @@ class Comparison:
 
         if found is not None:
             found += (parts[0] - parts[1]) * ANGLE_ARM
-        return Asked(f"clock of {names[0]} and {names[1]}", "clock", None if found is None else np.array([found.real]), measured)
+        return Asked(
+            f"clock of {names[0]} and {names[1]}", "clock", None if found is None else np.array([found.real]), measured
+        )
 
     def _mean_division(self, state: State) -> float:
         assert state.pattern is not None

@@ -79,7 +79,7 @@ def sayable(route: Route, rng: Rng) -> Sayable:
     first = {name: float(rng.uniform(-3.0, 3.0)) if rng.random() < 0.5 else 0.0 for name in HOLES}
     parts = tuple(_part(p, lead) for p in route.parts)
     drawn = {f"{p.name}.{s.name}": s for p in parts for s in p.surfaces}
-    devices = [cmath.rect(0.02, float(rng.uniform(-3, 3))) for _ in range(2)]
+    device = cmath.rect(0.02, float(rng.uniform(-3, 3)))
     divisions: dict[tuple[int, str], Division] = {}
     steps: list[Setup | Join] = []
     joined = next((i for i, step in enumerate(route.steps) if isinstance(step, Join)), len(route.steps))
@@ -95,7 +95,7 @@ def sayable(route: Route, rng: Rng) -> Sayable:
             _cut(cut, step.op, drawn[cut.surface], first, divisions, rng) if isinstance(cut, CutTeeth | Drill) else cut
             for cut in step.cuts
         )
-        steps.append(dataclasses.replace(step, hold=_hold(step.hold, drawn, devices, rng), cuts=cuts))
+        steps.append(dataclasses.replace(step, hold=_hold(step.hold, drawn, device, rng), cuts=cuts))
     return Sayable(dataclasses.replace(route, parts=parts, steps=tuple(steps)), divisions, lead, said)
 
 
@@ -131,9 +131,9 @@ def _read_by_a_dial(hold: CentredAndSquared | TwoPlanes, rng: Rng) -> CentredAnd
 
 
 def _hold(
-    hold: CentredAndSquared | TwoPlanes, drawn: dict[str, Surface], devices: list[complex], rng: Rng
+    hold: CentredAndSquared | TwoPlanes, drawn: dict[str, Surface], device: complex, rng: Rng
 ) -> CentredAndSquared | TwoPlanes:
-    """Some of the machine's own vectors point at a jaw, or belong to one of two devices that come back."""
+    """Some of the machine's own vectors point at a jaw, or belong to a device that comes back."""
 
     def centre(plane: Centre) -> Centre:
         if not isinstance(plane.by, Offset):
@@ -143,8 +143,8 @@ def _hold(
             jaw = int(rng.integers(JAWS))
             sign = -1.0 if drawn[plane.on].kind == "bore" else 1.0
             vector = sign * cmath.rect(abs(vector), 2.0 * math.pi * jaw / JAWS)
-        elif choice < 0.7 and isinstance(hold, CentredAndSquared):
-            vector = devices[int(rng.integers(2))]
+        elif choice < 0.8 and isinstance(hold, CentredAndSquared):
+            vector = device
         return dataclasses.replace(plane, by=Offset(vector))
 
     if isinstance(hold, CentredAndSquared):
