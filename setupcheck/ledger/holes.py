@@ -32,16 +32,20 @@ class HolePosition:
     signed: bool = False
 
     def base(self) -> float:
-        rounding = self.pattern.rounding
-        away = max((abs(r) for r in rounding), default=0.0) * self.pattern.radius
+        arcs = [r * self.pattern.radius * self.pattern.turn for r in self.pattern.rounding] or [0.0]
+        turned = -math.fsum(arcs) / len(arcs)
+        if self.turn is not None:
+            turned = self.turn.known().real * self.pattern.radius
+        away = max(abs(arc + turned) for arc in arcs)
         return 2.0 * away + vector_pushes(self.offset, 2.0)[0] + 2.0 * abs(self.pattern.radial.known().real)
 
     def pushes(self) -> list[Push]:
-        r = self.pattern.radius
+        r, n = self.pattern.radius, self.pattern.count
+        # turned to its mean angle, one hole at its bound among all others at the opposite one stands nearly twice as far
+        alone = 1.0 if self.turn is not None else 2.0 * (n - 1) / n
+        reach = {"angle": r * alone, "tangential": alone, "radial": 1.0}
         division = [Push(p.cause, 0.0, 2.0 * r * p.cause.bound) for p in self.pattern.periodic]
-        division += [
-            Push(s.cause, 0.0, 2.0 * s.bound * (r if s.along == "angle" else 1.0)) for s in self.pattern.scatter
-        ]
+        division += [Push(s.cause, 0.0, 2.0 * s.bound * reach[s.along]) for s in self.pattern.scatter]
         division += [Push(c, 0.0, 2.0 * r * c.bound) for c in self.pattern.drift]
         division += [Push(p.cause, 0.0, 2.0 * p.size) for p in real_pushes(self.pattern.radial)[1]]
         if self.turn is not None:

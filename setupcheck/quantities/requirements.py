@@ -5,6 +5,7 @@ from __future__ import annotations
 from dataclasses import dataclass
 
 from setupcheck.jobfile.models import Require
+from setupcheck.jobfile.sense import limit_kind
 from setupcheck.physics.gear_grades import LIMITS, grade_limit
 from setupcheck.quantities.shop import Floor
 
@@ -28,57 +29,13 @@ class Stack:
     about: str
 
 
-LENGTHS = {
-    "run-out",
-    "face-run-out",
-    "coaxial",
-    "cumulative-pitch",
-    "single-pitch",
-    "gap-centre-pitch",
-    "on-workpiece",
-    "position",
-    "chord",
-    "pitch-circle",
-    "mid-plane",
-    "backlash",
-    "backlash-swing",
-    "length",
-    "allowance",
-}
-ANGLES = {"index-range", "index-within"}
-
-
-def dimension_of(require: Require) -> str:
-    """Kind of unit a requirement's limits have: length, angle, torque or fraction."""
-    if require.what in LENGTHS or (require.what == "squareness" and require.across is not None):
-        return "length"
-    if require.what in ANGLES or require.what == "squareness":
-        return "angle"
-    return "torque" if require.what == "torque" else "fraction"
-
-
 def read_stack(floor: Floor, index: int) -> Stack:
     """Limits, unit and name of requirement `index`.
 
-    Raises: JobError where a limit has the wrong kind of unit, or a surface of the wrong kind is asked.
+    Raises: JobError where a grade cannot give the limit.
     """
     require, path = floor.loaded.job.require[index], f"require.{index}"
-    kind = dimension_of(require)
-    limits = {"at_most": require.at_most, "at_least": require.at_least}
-    if require.between is not None:
-        limits = {"between": require.between[0], "between ": require.between[1]}
-    for key, amount in limits.items():
-        # a bare number takes the file's units for lengths, as every size does
-        if (
-            amount is not None
-            and amount.dimension != kind
-            and not (kind == "fraction" and amount.dimension == "number")
-        ):
-            raise floor.problem(
-                f"{path}.{key.strip()}",
-                f"a limit of {require.what} is a {kind}, not a {amount.dimension}",
-                f"Write it as in {_example(kind)}",
-            )
+    kind = limit_kind(require)  # the reader has seen to it that the limits are of this kind
     if require.between is not None:
         low: float | None = require.between[0].value
         high: float | None = require.between[1].value
@@ -104,10 +61,6 @@ def read_stack(floor: Floor, index: int) -> Stack:
 
 def _short(text: str) -> str:
     return text.replace(".", "-")
-
-
-def _example(kind: str) -> str:
-    return {"length": "40 um", "angle": '75"', "torque": "40 N m", "fraction": "25 %"}[kind]
 
 
 def _grade(floor: Floor, require: Require, path: str) -> float:

@@ -243,7 +243,8 @@ def _gate(gate: Gate, *, inches: bool) -> Iterator[str]:
     if gate.reading <= 0.0:
         text = f"op {gate.op}, {dial} on {gate.on}: no reading alone brings {gate.by} inside ({planned} planned)"
     else:
-        text = f"op {gate.op}, {dial} on {gate.on}: up to {show(gate.reading, unit, digits)} ({planned} planned), set by {gate.by}"
+        reading = show(gate.reading, unit, digits)
+        text = f"op {gate.op}, {dial} on {gate.on}: up to {reading} ({planned} planned), set by {gate.by}"
     yield from wrap(text, first="  ", rest="      ")
 
 

@@ -5,6 +5,7 @@ from __future__ import annotations
 import os
 import stat
 from os import PathLike
+from pathlib import Path
 
 from setupcheck.errors import JobError, Problem
 from setupcheck.yamlfile.limits import LARGEST_FILE
@@ -37,20 +38,20 @@ def read_text(path: str | PathLike[str]) -> str:
         raise _not_utf8(file, raw, why.start) from None
     text = text.replace("\r\n", "\n").replace("\r", "\n")
     if not text.strip():
-        raise _refusal(file, "the file is empty", "Write a job into it; `setupcheck new` prints one to begin with")
+        raise _refusal(file, "the file is empty", "Write a job into it; the commented ones in jobs/ show how")
     return text
 
 
 def _bytes_of(file: str) -> bytes:
     try:
-        found = os.stat(file)
+        found = Path(file).stat()
         if stat.S_ISDIR(found.st_mode):
             raise _refusal(file, "this is a directory", "Name a file in it")
         if not stat.S_ISREG(found.st_mode):
             raise _refusal(file, "this is not a plain file", "Name a file on the disk")
         if found.st_size > LARGEST_FILE:
             raise _too_large(file, found.st_size)
-        with open(file, "rb") as stream:
+        with Path(file).open("rb") as stream:
             raw = stream.read(LARGEST_FILE + 1)
     except FileNotFoundError:
         raise _refusal(file, "there is no such file", "Check the name and the directory") from None

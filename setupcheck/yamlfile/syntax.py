@@ -22,6 +22,8 @@ _TAB_BEFORE_TEXT = re.compile(r" *\t[ \t]*(?=[^ \t#])")
 
 # What the parser says (libyaml and the Python parser word it differently) -> what is wrong, what to write.
 _COMPLAINTS = (
+    ("maximum nesting depth", "lists and maps are nested too deep", "Take some of them apart"),
+    ("unexpected ':'", "a value is missing behind the colon", "Write key: value"),
     (
         "mapping values are not allowed",
         "a colon stands where no key can be",

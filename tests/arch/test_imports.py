@@ -74,8 +74,7 @@ def test_a_module_imports_only_what_the_map_allows(file: Path) -> None:
         if parts[0] == "setupcheck":
             target = (
                 parts[1]
-                if len(parts) > 1
-                and (ROOT / parts[1]).exists()
+                if (len(parts) > 1 and (ROOT / parts[1]).exists())
                 or (len(parts) > 1 and (ROOT / f"{parts[1]}.py").exists())
                 else ""
             )

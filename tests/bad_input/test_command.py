@@ -56,11 +56,11 @@ FILES: dict[str, tuple[Callable[[Path], object], str]] = {
     "directory": (lambda path: path.mkdir(), "job.yaml: this is a directory. Name a file in it\n"),
     "empty": (
         content(b""),
-        "job.yaml: the file is empty. Write a job into it; `setupcheck new` prints one to begin with\n",
+        "job.yaml: the file is empty. Write a job into it; the commented ones in jobs/ show how\n",
     ),
     "blank": (
         content(b" \n\n"),
-        "job.yaml: the file is empty. Write a job into it; `setupcheck new` prints one to begin with\n",
+        "job.yaml: the file is empty. Write a job into it; the commented ones in jobs/ show how\n",
     ),
     "notes only": (content(b"# a plan\n"), "job.yaml: the file holds no values. Write key: value on its lines\n"),
     "binary": (

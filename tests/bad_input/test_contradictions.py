@@ -2,15 +2,9 @@
 
 from __future__ import annotations
 
-from itertools import product
-from typing import get_args
-
 import pytest
 
-from setupcheck.jobfile.models import Require, What
 from setupcheck.jobfile.reading import read_job_text
-from setupcheck.jobfile.sense import limit_kind
-from setupcheck.quantities.requirements import dimension_of
 from tests.bad_input.ring import RING, refused, spoilt
 
 SURFACE = "      back: {kind: face, at: 0, facing: -z, diameter: 96}\n"
@@ -108,9 +102,3 @@ def test_a_share_above_the_whole_is_refused() -> None:
 def test_a_figure_with_a_sign_may_have_a_limit_below_zero(what: str) -> None:
     asked = f"  - {{what: {what}, of: ring.front, about: ring.back, between: [-10 um, 10 um]}}\n"
     assert read_job_text(RING + asked, "job.yaml")
-
-
-@pytest.mark.parametrize(("what", "across"), list(product(get_args(What), [None, "40"])))
-def test_the_reader_and_the_stacks_agree_on_the_kind_of_every_limit(what: str, across: str | None) -> None:
-    asked = Require.model_validate({"what": what, "grade": 5, "across": across})
-    assert dimension_of(asked) == limit_kind(asked)

@@ -1,6 +1,6 @@
 """Whole reports and README excerpts, kept as files and compared. Run this file to write them anew:
 
-    python -m tests.golden.pages
+python -m tests.golden.pages
 """
 
 from __future__ import annotations

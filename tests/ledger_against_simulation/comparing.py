@@ -218,11 +218,15 @@ class Comparison:
         drawn = self.route.surface(of)
         scale = ANGLE_ARM if what == "index-range" else 1.0
         also = str(require.get("clock", ""))
+        axis = next(q.about for q in self.route.questions if self.frame(q.about) == frame)
         if what == "allowance":
-            also = f"{of.partition('@')[0]}@{_cut_again(self.route)[of.partition('@')[0]][-2]}"
+            about, also = axis, f"{of.partition('@')[0]}@{_cut_again(self.route)[of.partition('@')[0]][-2]}"
         if what == "mid-plane":
             assert self.place is not None
             also = str(self.place["worm_axis"]["from"])
+        if what == "length":
+            predicted = None if predicted is None else predicted - abs(self.state(of).z - self.state(about).z)
+            about, also = axis, about
         measured = _FIGURES[what](of, about, also, frame, drawn.radius)
         return Asked(
             f"require {what} of {of} about {about} {require.get('clock', '')}",
@@ -287,6 +291,8 @@ def _requirements(route: Route) -> Iterator[dict[str, object]]:
             yield {"what": "coaxial", "of": q.of, "about": q.about, **limit}
         elif q.kind == "face run-out":
             yield {"what": "face-run-out", "of": q.of, "about": q.about, **limit}
+        elif q.kind == "length":
+            yield {"what": "length", "of": q.of, "about": q.against, "at_most": "900 mm"}
         elif q.kind == "gaps" and q.of == "wheel.teeth":
             for what in ("cumulative-pitch", "single-pitch", "gap-centre-pitch"):
                 yield {"what": what, "of": q.of, "about": q.about, **limit}
@@ -301,12 +307,13 @@ def _requirements(route: Route) -> Iterator[dict[str, object]]:
 
 
 def _cut_again(route: Route) -> dict[str, list[int]]:
-    """Round surfaces with an earlier state, and the operations that made them (0: bought)."""
+    """Surfaces with an earlier state, and the operations that made them (0: bought)."""
     made: dict[str, list[int]] = {f"{p.name}.{e.surface}": [0] for p in route.parts for e in p.existing}
     for step in route.steps:
         for cut in step.cuts if isinstance(step, Setup) else ():
             made.setdefault(cut.surface, []).append(step.op)
-    return {n: ops for n, ops in made.items() if len(ops) > 1 and route.surface(n).kind in ("cylinder", "bore")}
+    kinds = ("cylinder", "bore", "face")
+    return {n: ops for n, ops in made.items() if len(ops) > 1 and route.surface(n).kind in kinds}
 
 
 Measured = Callable[[Bench], Values]
@@ -331,8 +338,15 @@ def _face_run_out(of: str, about: str, clock: str, frame: str, radius: float) ->
     return lambda b: np.array([measure.face_run_out(b.world, of, about)])
 
 
-def _length(of: str, about: str, clock: str, frame: str, radius: float) -> Measured:
-    raise NotImplementedError
+def _length(of: str, about: str, other: str, frame: str, radius: float) -> Measured:
+    """How much longer than drawn."""
+
+    def longer(b: Bench) -> Values:
+        drawn = measure.drawn_length(b.world, of, other, seen_from=frame)
+        got = measure.length(b.world, of, other, about, seen_from=frame) - drawn
+        return np.array([got if drawn >= 0.0 else -got])
+
+    return longer
 
 
 def _range(kind: tuple[str, ...], figure: Callable[[NDArray[np.float64]], float], scale: float) -> object:
@@ -381,8 +395,16 @@ def _mid_plane(of: str, about: str, face: str, frame: str, radius: float) -> Mea
 def _allowance(of: str, about: str, before: str, frame: str, radius: float) -> Measured:
     """Stock between two states drawn alike: less than nothing by as much as they miss each other."""
 
+    def on_face(b: Bench) -> Values:
+        drawn = b.world.made(of).drawn
+        ways = [measure.height(b.world, state, about) for state in (before, of)]
+        leans = [measure.lean(b.world, state, about) for state in (before, of)]
+        return np.array([drawn.facing * (ways[0] - ways[1]) - radius * abs(leans[0] - leans[1])])
+
     def least(b: Bench) -> Values:
         new, old = b.world.made(of), b.world.made(before)
+        if new.drawn.kind == "face":
+            return on_face(b)
         ends = np.array([[0.0, 0.0, z, 1.0] for z in (new.drawn.z_from, new.drawn.z_to)])
         heights = [float((b.world.drawn_between(old.part, frame) @ end)[2]) for end in ends]
         return np.array([-max(abs(measure.offset(b.world, of, before, at=h, seen_from=frame)) for h in heights)])
@@ -403,4 +425,5 @@ _FIGURES: dict[str, Callable[[str, str, str, str, float], Measured]] = {
     "pitch-circle": _pitch_circle,
     "mid-plane": _mid_plane,
     "allowance": _allowance,
+    "length": _length,
 }

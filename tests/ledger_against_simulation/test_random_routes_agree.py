@@ -128,20 +128,20 @@ LEAST = {
     "clearance": 100,
     "device": 100,
     "device that comes back": 8,
-    "joined same way": 50,
+    "joined same way": 45,
     "joined reversed": 50,
     "squared by bore": 50,
     "squared by shoulder": 50,
     "mounting not said": 10,
-    "cut after joining": 60,
+    "cut after joining": 50,
     "cut after joining, inner part": 30,
     "three parts": 40,
     "oblique right": 25,
     "oblique left": 25,
     "readout step": 20,
     "cut again": 40,
-    "offset": 200,
-    "lean": 200,
+    "offset": 180,
+    "lean": 180,
     "length": 150,
     "length open": 40,
     "wobble": 80,
@@ -149,7 +149,8 @@ LEAST = {
     "flank cw": 80,
     "index ccw": 80,
     "gaps": 100,
-    "clock open": 20,
+    "angle": 80,
+    "angle open": 20,
     "cumulative-pitch": 80,
     "single-pitch": 80,
     "index-range": 80,
@@ -160,7 +161,7 @@ LEAST = {
     "coaxial": 150,
     "allowance": 40,
 }
-"""So many routes of each kind at least; three quarters or less of what these seeds give."""
+"""So many routes of each kind at least."""
 
 
 def _kinds(route: Tried) -> set[str]:

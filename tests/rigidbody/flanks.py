@@ -93,7 +93,9 @@ def index_on_worm(frames: Array, flank: Flank, angle: Array) -> Array:
     turned = np.zeros(len(frames))
     for _ in range(20):
         back = turned - angle  # the part is turned by this; the line's normal, seen from the part, by its opposite
-        normals = np.stack([n[0] * np.cos(back) + n[1] * np.sin(back), -n[0] * np.sin(back) + n[1] * np.cos(back)], axis=-1)
+        normals = np.stack(
+            [n[0] * np.cos(back) + n[1] * np.sin(back), -n[0] * np.sin(back) + n[1] * np.cos(back)], axis=-1
+        )
         reach, touching = _support(frames, flank, normals)
         # d(n . turned point)/d(turned): at a touching point only the turning counts
         rate = -normals[:, 0] * touching[:, 1] + normals[:, 1] * touching[:, 0]

@@ -97,7 +97,9 @@ def _cut(cut: Cut, drawn: Surface, standing: Array, place: float) -> Geometry:
     dial = cut.dial if isinstance(cut, CutTeeth) else 0.0
     axis = line_through(cut.machine_error, place, 0j)
     centre = np.array([cut.machine_error.real, cut.machine_error.imag, place + dial])
-    frames = np.stack([_gap_frame(centre, axis.along, complex(r), float(a)) for r, a in zip(reach, angles, strict=True)])
+    frames = np.stack(
+        [_gap_frame(centre, axis.along, complex(r), float(a)) for r, a in zip(reach, angles, strict=True)]
+    )
     # z of a gap's frame looks to the part's +z: turned over about the outward direction when the part is reversed
     frames = frames @ np.diag([1.0, float(way), float(way), 1.0])
     return Gaps(axis, frames, width, cut.first_at + way * steps)

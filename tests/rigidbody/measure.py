@@ -222,7 +222,9 @@ def holes(world: World, of: str, about: str, *, seen_from: str = "") -> HoleFigu
     belongs = seen.made.drawn.radius * np.exp(1j * angle)
     local = (places - belongs) * np.exp(-1j * angle)
     centre, radius = best_circle(places)
-    return HoleFigures(places, places - belongs, local.real, local.imag, np.abs(np.roll(places, -1) - places), centre, radius)
+    return HoleFigures(
+        places, places - belongs, local.real, local.imag, np.abs(np.roll(places, -1) - places), centre, radius
+    )
 
 
 def best_circle(places: ComplexArray) -> tuple[complex, float]:

@@ -218,7 +218,9 @@ def seat(world: World, join: Join) -> tuple[Array, Array]:
     if face.drawn.facing * join.way != -looks:
         raise ValueError("the seat's face and the shoulder do not look at each other")
     real_shoulder = face_of(shoulder).moved(from_inner)
-    rests = plane_at(real_shoulder.height_on_axis() + looks * (join.seat.spacer + join.seat.spacer_error), real_shoulder.slope())
+    rests = plane_at(
+        real_shoulder.height_on_axis() + looks * (join.seat.spacer + join.seat.spacer_error), real_shoulder.slope()
+    )
     z = shoulder.drawn.mid + looks * join.seat.spacer - join.way * face.drawn.mid
     drawn = drawn_pose(join.way, join.insertion, z)
     middle = np.array([0.0, 0.0, outer.drawn.mid, 1.0])

@@ -76,7 +76,8 @@ def second_order(route: Route) -> float:
     whole = answers(run(route), route)
     small = answers(run(route.scaled(SHARP)), route)
     return max(
-        float(np.max(np.abs(whole[q] - small[q] / SHARP))) * LEVER.get(q.kind, 1.0) / (1.0 - SHARP) for q in route.questions
+        float(np.max(np.abs(whole[q] - small[q] / SHARP))) * LEVER.get(q.kind, 1.0) / (1.0 - SHARP)
+        for q in route.questions
     )
 
 
@@ -130,7 +131,9 @@ def _blank(rng: Rng) -> Part:
     ends = np.concatenate([[0.0], ends / ends[-1] * total])
     across = rng.uniform(45.0, 160.0, size=4)
     names = ("hub", "rim", "land", "tail")
-    surfaces = [cylinder(n, float(d), float(a), float(b)) for n, d, a, b in zip(names, across, ends, ends[1:], strict=False)]
+    surfaces = [
+        cylinder(n, float(d), float(a), float(b)) for n, d, a, b in zip(names, across, ends, ends[1:], strict=False)
+    ]
     surfaces += [face("back", 0.0, -1, float(across[0])), face("front", total, +1, float(across[3]))]
     for k in (1, 2, 3):
         surfaces.append(
@@ -378,7 +381,9 @@ def _attempt(rng: Rng) -> Route | None:
         steps.append(join)
         for _ in range(after):
             part = _pick(rng, ["wheel", "spindle"])
-            setup = _setup(shop, 10 * len(steps) + 10, part, [*of_wheel, "spindle.tip", "spindle.flange"], ("wheel", "spindle"))
+            setup = _setup(
+                shop, 10 * len(steps) + 10, part, [*of_wheel, "spindle.tip", "spindle.flange"], ("wheel", "spindle")
+            )
             if setup is None:
                 return None
             steps.append(setup)

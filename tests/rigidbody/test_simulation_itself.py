@@ -131,7 +131,9 @@ def test_a_bore_of_a_second_chucking_runs_out_by_the_dial_reading_of_the_datum(w
 
 
 def test_surfaces_of_one_holding_owe_nothing_to_it() -> None:
-    hold = CentredAndSquared(Centre("wheel.rim", 20.0, RadialDial(0.05, 1.1)), Square("wheel.front", FaceDial(0.02, 80.0, 2.0)))
+    hold = CentredAndSquared(
+        Centre("wheel.rim", 20.0, RadialDial(0.05, 1.1)), Square("wheel.front", FaceDial(0.02, 80.0, 2.0))
+    )
     world = machined(setup(hold, cuts=(Turn("wheel.hole"), Turn("wheel.pocket"), Turn("wheel.shelf"))))
     assert measure.run_out(world, "wheel.pocket", "wheel.hole") == pytest.approx(0.0, abs=1e-9)
     assert measure.face_run_out(world, "wheel.shelf", "wheel.hole") == pytest.approx(0.0, abs=1e-9)
@@ -145,7 +147,9 @@ def test_the_new_axis_lies_on_the_far_side_of_a_high_shaft_and_the_near_side_of_
     # datum minus machine axis: + (FIM/2) e^{i phi} outside, - in a bore, and the part's own direction either way round
     hold = CentredAndSquared(Centre(datum, 20.0, RadialDial(0.04, 0.5)), Square("wheel.front", Lean(0j)))
     world = machined(setup(hold, cuts=(Turn("wheel.pocket"),), way=way, insertion=2.2))
-    assert -sign * cmath.rect(0.02, 0.5) == pytest.approx(measure.offset(world, "wheel.pocket", datum, at=20.0), abs=NANO)
+    assert -sign * cmath.rect(0.02, 0.5) == pytest.approx(
+        measure.offset(world, "wheel.pocket", datum, at=20.0), abs=NANO
+    )
 
 
 @BOTH_WAYS
@@ -210,7 +214,9 @@ def test_a_part_pushed_home_in_a_register_stands_off_by_half_the_diametral_clear
 @BOTH_WAYS
 def test_two_planes_carry_their_errors_to_a_third_by_the_lever(way: int) -> None:
     # +10 um at z = 5, -20 um at z = 35: the made axis is at -10, +20 there, +35 at z = 50, leaned by 1 mrad
-    hold = TwoPlanes(Centre("wheel.rim", 5.0, RadialDial(0.020, 0.0)), Centre("wheel.rim", 35.0, RadialDial(0.040, math.pi)))
+    hold = TwoPlanes(
+        Centre("wheel.rim", 5.0, RadialDial(0.020, 0.0)), Centre("wheel.rim", 35.0, RadialDial(0.040, math.pi))
+    )
     world = machined(setup(hold, cuts=(Turn("wheel.hole"),), way=way, insertion=1.0))
     for z, place in ((5.0, -10.0), (35.0, 20.0), (50.0, 35.0)):
         assert measure.offset(world, "wheel.hole", "wheel.rim", at=z) == pytest.approx(place * UM, abs=0.02 * UM)
@@ -232,8 +238,12 @@ def test_a_stop_that_stands_off_shifts_every_cut_the_same_way(way: int) -> None:
     stop = PointStop("wheel.back", 0.0, 0.0, 0.012)
     world = machined(setup(cuts=(Turn("wheel.shelf"), Turn("wheel.front", dial=0.003)), way=way, stop=stop))
     # the part lies 12 um further along the machine axis, the cuts stay: 12 um nearer to the stop, on the part's scale
-    assert measure.length(world, "wheel.shelf", "wheel.back", "wheel.hole") == pytest.approx(25.0 - way * 0.012, abs=NANO)
-    assert measure.length(world, "wheel.front", "wheel.shelf", "wheel.hole") == pytest.approx(15.0 + way * 0.003, abs=NANO)
+    assert measure.length(world, "wheel.shelf", "wheel.back", "wheel.hole") == pytest.approx(
+        25.0 - way * 0.012, abs=NANO
+    )
+    assert measure.length(world, "wheel.front", "wheel.shelf", "wheel.hole") == pytest.approx(
+        15.0 + way * 0.003, abs=NANO
+    )
 
 
 @BOTH_WAYS
@@ -241,7 +251,9 @@ def test_a_stop_that_stands_off_shifts_every_cut_the_same_way(way: int) -> None:
     ("stopped", "squares", "distance"),
     [("wheel.back", "wheel.front", 25.0 - 0.008), ("wheel.front", "wheel.back", -15.0 + 0.008)],
 )
-def test_a_leaned_face_meets_a_ring_with_its_highest_spot(stopped: str, squares: str, distance: float, way: int) -> None:
+def test_a_leaned_face_meets_a_ring_with_its_highest_spot(
+    stopped: str, squares: str, distance: float, way: int
+) -> None:
     # leaned 0.2 mrad against the holding: on a ring of 40 mm its high spot stands 8 um proud of its middle, so the
     # middle stays 8 um clear of the ring and the shelf is cut 8 um nearer to it
     part = with_existing(Existing(stopped.partition(".")[2], lean=0.2e-3 + 0j))
@@ -273,7 +285,9 @@ def test_holes_clocked_to_a_gap_follow_it_and_its_error(way: int) -> None:
     world = machined(first, second)
     # the teeth stood 4 mrad on, so they lie 4 mrad back on the part; the gap stood 0.3 mrad on, so the holes lie back
     turned = -0.004 - way * 3e-4
-    assert 45.0 * turned == pytest.approx(float(np.mean(measure.holes(world, "wheel.ring", "wheel.rim").sideways)), abs=NANO)
+    assert 45.0 * turned == pytest.approx(
+        float(np.mean(measure.holes(world, "wheel.ring", "wheel.rim").sideways)), abs=NANO
+    )
 
 
 # ---------------------------------------------------------------- teeth
@@ -282,7 +296,9 @@ def test_holes_clocked_to_a_gap_follow_it_and_its_error(way: int) -> None:
 PERFECT = Existing("teeth")
 
 
-def bought_teeth(count: int, radius: float, *, form: str = "involute", lead: float = 0.0, at: Existing = PERFECT) -> World:
+def bought_teeth(
+    count: int, radius: float, *, form: str = "involute", lead: float = 0.0, at: Existing = PERFECT
+) -> World:
     drawn = teeth("teeth", count, radius, pressure_angle=ALPHA, z=0.0, form=form, lead_angle=lead)  # type: ignore[arg-type]
     part = Part("wheel", (cylinder("seat", 40.0, -10.0, 10.0), drawn), (Existing("seat"), at))
     return machined(parts=(part,))
@@ -319,7 +335,9 @@ def test_each_flank_of_a_gap_stands_half_a_gap_from_its_middle(count: int) -> No
         wave = 0.020 / math.cos(ALPHA) * np.sin(0.3 - theta - side * (ALPHA + math.pi / (2 * count)))
         assert flank == pytest.approx(wave, abs=0.01 * UM)
         driven = 0.020 / math.cos(ALPHA) * np.sin(0.3 - theta - side * ALPHA)
-        assert -90.0 * measure.index(world, "wheel.teeth", "wheel.seat", side=side) == pytest.approx(driven, abs=0.005 * UM)
+        assert -90.0 * measure.index(world, "wheel.teeth", "wheel.seat", side=side) == pytest.approx(
+            driven, abs=0.005 * UM
+        )
 
 
 def test_straight_flanks_lean_less_against_the_radius_and_show_a_little_less() -> None:
@@ -342,7 +360,9 @@ def test_a_leaned_wheel_wobbles_by_the_face_run_out_at_its_pitch_circle() -> Non
 def test_oblique_gaps_turn_the_wobble_into_pitch_error_by_the_tangent_of_the_lead() -> None:
     # r t tan(gamma) = 54 * 0.25e-3 * tan(3.5764 deg) = 0.844 um, peak to peak 1.688 um
     lead = math.radians(3.5764)
-    figures = measure.teeth(bought_teeth(72, 54.0, lead=lead, at=Existing("teeth", lean=0.25e-3)), "wheel.teeth", "wheel.seat")
+    figures = measure.teeth(
+        bought_teeth(72, 54.0, lead=lead, at=Existing("teeth", lean=0.25e-3)), "wheel.teeth", "wheel.seat"
+    )
     assert measure.cumulative(figures.gap_centre) == pytest.approx(1.688 * UM, abs=0.005 * UM)
 
 

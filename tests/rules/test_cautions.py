@@ -85,7 +85,11 @@ def test_a_stop_and_check_is_open_until_somebody_signs_for_that_operation(tmp_pa
 @pytest.mark.parametrize(
     ("answer", "message", "remedy"),
     [
-        (Answer("press-forse", 50, "KL"), "there is no caution 'press-forse' to check off", "Did you mean press-force?"),
+        (
+            Answer("press-forse", 50, "KL"),
+            "there is no caution 'press-forse' to check off",
+            "Did you mean press-force?",
+        ),
         (Answer("press-force", 40, "KL"), "press-force is not asked at op 40", "It is asked at op 50."),
         (Answer("hot-part", 50, "KL"), "hot-part is not asked at op 50", "Take the entry out."),
         (Answer("press-force", 50, ""), "press-force at op 50 is checked by nobody", "Write initials under by."),
@@ -138,7 +142,9 @@ def test_an_operation_prints_the_cautions_that_belong_to_it(facts: dict[str, Any
 
 
 def test_every_shipped_caution_is_set_off_by_one_of_these_operations() -> None:
-    assert {caution.id for caution in shipped().cautions} == {name for _, names in OPERATIONS.values() for name in names}
+    assert {caution.id for caution in shipped().cautions} == {
+        name for _, names in OPERATIONS.values() for name in names
+    }
 
 
 def test_a_seized_hub_is_never_hammered_or_torched() -> None:

@@ -60,7 +60,10 @@ def test_a_caution_and_a_check_of_the_engine_can_be_looked_up_too(tmp_path: Path
 
 @pytest.mark.parametrize(
     ("asked", "says"),
-    [("HOLD-0001", "there is no rule HOLD-0001. Did you mean HOLD-001?"), ("?", "there is no rule ?. Ask without an id.")],
+    [
+        ("HOLD-0001", "there is no rule HOLD-0001. Did you mean HOLD-001?"),
+        ("?", "there is no rule ?. Ask without an id."),
+    ],
 )
 def test_an_unknown_id_is_answered_with_the_nearest(tmp_path: Path, asked: str, says: str) -> None:
     with pytest.raises(RuleBookError) as refused:

@@ -1,0 +1,1 @@
+"""Laws of the ledger, on jobs drawn at random."""
