@@ -22,8 +22,8 @@ if TYPE_CHECKING:
 class HolePosition:
     """Position of holes: twice the largest vector from where a hole belongs [mm].
 
-    turn   account of the pattern's angle about the clocking feature [rad]; None: the pattern may be turned as a whole
-           to its mean angle (no clocking feature is asked for)
+    turn   account of the pattern's angle about the clocking feature [rad]; None: no clocking feature is asked for, so the
+           pattern may be turned as a whole, and is, until its division errors reach equally far both ways
     """
 
     offset: Account
@@ -33,19 +33,18 @@ class HolePosition:
 
     def base(self) -> float:
         arcs = [r * self.pattern.radius * self.pattern.turn for r in self.pattern.rounding] or [0.0]
-        turned = -math.fsum(arcs) / len(arcs)
+        turned = -(max(arcs) + min(arcs)) / 2.0
         if self.turn is not None:
             turned = self.turn.known().real * self.pattern.radius
         away = max(abs(arc + turned) for arc in arcs)
         return 2.0 * away + vector_pushes(self.offset, 2.0)[0] + 2.0 * abs(self.pattern.radial.known().real)
 
     def pushes(self) -> list[Push]:
-        r, n = self.pattern.radius, self.pattern.count
-        # turned to its mean angle, one hole at its bound among all others at the opposite one stands nearly twice as far
-        alone = 1.0 if self.turn is not None else 2.0 * (n - 1) / n
-        reach = {"angle": r * alone, "tangential": alone, "radial": 1.0}
+        r = self.pattern.radius
         division = [Push(p.cause, 0.0, 2.0 * r * p.cause.bound) for p in self.pattern.periodic]
-        division += [Push(s.cause, 0.0, 2.0 * s.bound * reach[s.along]) for s in self.pattern.scatter]
+        division += [
+            Push(s.cause, 0.0, 2.0 * s.bound * (r if s.along == "angle" else 1.0)) for s in self.pattern.scatter
+        ]
         division += [Push(c, 0.0, 2.0 * r * c.bound) for c in self.pattern.drift]
         division += [Push(p.cause, 0.0, 2.0 * p.size) for p in real_pushes(self.pattern.radial)[1]]
         if self.turn is not None:
@@ -62,7 +61,7 @@ class HolePosition:
         """Deviation of every hole in the frame of the pattern, shape (trials, count)."""
         arcs = draws.arcs(self.pattern)
         if self.turn is None:
-            arcs = arcs - arcs.mean(axis=1, keepdims=True)
+            arcs = arcs - (arcs.max(axis=1, keepdims=True) + arcs.min(axis=1, keepdims=True)) / 2.0
         else:
             arcs = arcs + (self.pattern.radius * draws.real(self.turn))[:, None]
         outward = draws.radials(self.pattern) + draws.real(self.pattern.radial)[:, None]

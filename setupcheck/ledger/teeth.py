@@ -6,7 +6,8 @@ Gap j is the j-th cut, at theta_j = start + turn 2 pi (j - 1)/N. With the axis o
                defined; the flank stands half a gap from the middle)
   wheel angle  the same with alpha alone: a worm touches the flank along its line of action (r Delta_j as an angle)
   mid-plane    a - Re(conj(t) r exp(i theta_j))
-A gap that runs at the lead angle gamma turns the wobble into pitch: e becomes e + i h tan(gamma) r t, h = +1 right-hand.
+A gap that runs at the lead angle gamma turns the wobble into pitch: i h tan(gamma) r t (h = +1 right-hand) joins e at the
+gap centre; on a flank it comes without the 1/cos alpha and the phase, for it moves the gap along (`oblique_turn`).
 Sources: geometry, derived here; definitions of single and cumulative pitch deviation as in ISO 1328-1:1995; an exact
 involute in the tests agrees within 0.03 um at e = 20 um.
 """

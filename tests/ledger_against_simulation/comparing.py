@@ -260,7 +260,7 @@ class Comparison:
         if found is not None:
             found += (parts[0] - parts[1]) * ANGLE_ARM
         return Asked(
-            f"clock of {names[0]} and {names[1]}", "clock", None if found is None else np.array([found.real]), measured
+            f"angle from {names[1]} to {names[0]}", "angle", None if found is None else np.array([found.real]), measured
         )
 
     def _mean_division(self, state: State) -> float:
@@ -363,7 +363,9 @@ def _range(kind: tuple[str, ...], figure: Callable[[NDArray[np.float64]], float]
 def _position(of: str, about: str, clock: str, frame: str, radius: float) -> Measured:
     def largest_vector(b: Bench) -> Values:
         got = measure.holes(b.world, of, about, seen_from=frame)
-        turn = np.mean(got.sideways)
+        e = measure.offset(b.world, of, about, seen_from=frame)
+        own = got.sideways - np.imag(e * np.exp(-1j * np.angle(got.places - got.deviation)))
+        turn = (np.max(own) + np.min(own)) / 2.0
         if clock:
             first = b.middles(clock, about, frame)[0]
             turn = first / b.world.made(clock).drawn.radius * radius
