@@ -116,9 +116,10 @@ class Account:
         """The vector after a turn about the axis by an angle nobody recorded: its known part becomes a ring.
 
         angle  a cause of law `ring` and radius 1 that stands for exp(i psi); shared by all vectors of one mounting
+        A device that held both parts no longer errs in one direction for both: its share gets a name of its own here.
         """
         known = self.known()
-        terms = {(c.without_mean() if c.mean else c): ab for c, ab in self.terms.items()}
+        terms = {c.turned_with(angle): ab for c, ab in self.terms.items()}
         if abs(known) > 0.0:
             terms[angle] = (known, 0j)
         return Account(0j, terms)

@@ -8,7 +8,7 @@ from __future__ import annotations
 
 import hashlib
 import math
-from dataclasses import dataclass, replace
+from dataclasses import dataclass, field, replace
 from typing import TYPE_CHECKING, Literal
 
 if TYPE_CHECKING:
@@ -38,9 +38,9 @@ TRUNCATION_2D = 3.4393
 
 @dataclass(frozen=True, slots=True, eq=False)
 class Cause:
-    """One independent error source.
+    """One independent error source. Two are the same if name and place in the job file are; `identity` names its stream.
 
-    key      its name in shop words, unique in a job; it also names its stream of random numbers
+    key      its name in shop words
     op       the operation it belongs to, None for a bought part
     law      how X is spread:
              disc             uniform over the disc of radius `high` (an eccentricity of which only a bound is known)
@@ -59,6 +59,7 @@ class Cause:
     paths    the job paths the numbers stand at
     rests_on name of the typical value used, if any
     pair     name under which clearances draw one common play (two planes of one fit)
+    shared   one cause in several setups (a device whose mark is kept): known by its name alone
     Source of the laws: uniform over the disc is our choice by analogy to JCGM 100:2008 4.3.7; the ring of random phase
     is the fixed eccentricity of unknown direction; rectangular lengths JCGM 100:2008 4.3.7.
     """
@@ -75,13 +76,19 @@ class Cause:
     paths: tuple[str, ...] = ()
     rests_on: str = ""
     pair: str = ""
+    shared: bool = False
     of: Account | None = None
+    identity: str = field(init=False, default="")
+
+    def __post_init__(self) -> None:
+        place = "" if self.shared or not self.paths else self.paths[0]
+        object.__setattr__(self, "identity", f"{self.key} [{place}]" if place else self.key)
 
     def __eq__(self, other: object) -> bool:
-        return isinstance(other, Cause) and self.key == other.key
+        return isinstance(other, Cause) and self.identity == other.identity
 
     def __hash__(self) -> int:
-        return hash(self.key)
+        return hash(self.identity)
 
     @property
     def is_real(self) -> bool:
@@ -114,9 +121,11 @@ class Cause:
         """True where X is never negative: it moves a figure one way only."""
         return self.law in ("one-sided", "high-point")
 
-    def without_mean(self) -> Cause:
-        """The same cause with its known part taken out (it has been accounted for elsewhere)."""
-        return replace(self, key=f"{self.key} (scatter)", mean=0j)
+    def turned_with(self, angle: Cause) -> Cause:
+        """This cause on a part that was turned by an unknown `angle`: no known direction, nothing shared with the other part."""
+        if self.shared:
+            return replace(self, key=f"{self.key}, as put on (op {angle.op})", mean=0j)
+        return replace(self, key=f"{self.key} (scatter)", mean=0j) if self.mean else self
 
 
 def stream_key(name: str) -> int:

@@ -55,7 +55,7 @@ class Draws:
         return found
 
     def _draw(self, cause: Cause) -> Complexes:
-        rng, n = self.stream(cause.key), self.trials
+        rng, n = self.stream(cause.identity), self.trials
         match cause.law:
             case "disc":
                 return _polar(_single(cause.high) * np.sqrt(_uniform(rng, n)), _uniform(rng, n))
@@ -113,7 +113,7 @@ class Draws:
     def scatter(self, scatter: Scatter, pattern: Pattern) -> Reals:
         """Per-place values of one scatter as lengths [mm], uniform within its bound, shape (trials, count)."""
         bound = scatter.bound * (pattern.radius if scatter.along == "angle" else 1.0)
-        drawn = self.stream(scatter.cause.key).random((pattern.count, self.trials), dtype=np.float32)
+        drawn = self.stream(scatter.cause.identity).random((pattern.count, self.trials), dtype=np.float32)
         drawn -= np.float32(0.5)
         drawn *= _single(2.0 * bound)
         return drawn.T

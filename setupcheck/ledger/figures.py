@@ -271,7 +271,7 @@ class Tooth:
     def _ranges_and_steps(self, draws: Draws) -> tuple[Reals, Reals]:
         """Range and largest step of the worse flank for all trials [mm]; figures of one ring share them."""
         waves = [self._wave(side) for side in self._sides()]
-        terms = frozenset((i, c.key, a, b) for i, w in enumerate(waves) for c, (a, b) in w.terms.items())
+        terms = frozenset((i, c.identity, a, b) for i, w in enumerate(waves) for c, (a, b) in w.terms.items())
         key = (id(self.pattern), tuple(w.constant for w in waves), terms)
         found = draws.memo.get(key)
         if found is not None:

@@ -280,6 +280,26 @@ def joined(
     )
 
 
+def joined_placing(
+    placing: Placing, seat: Seat, *, offset: Account, lean: Account, axial: Account, clock: Account, unknown: Cause
+) -> Placing:
+    """The machine that holds the inner part, in the frame of the outer one: the same change of frame as `joined`."""
+
+    def turn(vector: Account) -> Account:
+        if seat.turned is None:
+            return vector.turned_by_an_unknown_angle(unknown)
+        return part_vector(vector, sg=seat.sense, inserted_at=-seat.sense * seat.turned)
+
+    at_zero = placing.axis_at(-seat.sense * seat.shift)  # the inner frame's height of the outer frame's zero
+    return Placing(
+        turn(at_zero) + offset,
+        turn(placing.lean) * float(seat.sense) + lean,
+        placing.axial * float(seat.sense) + axial,
+        placing.clock * float(seat.sense) + clock,
+        placing.sg * seat.sense,
+    )
+
+
 def bought(
     root: State,
     *,

@@ -98,7 +98,7 @@ def vector_error(
         # only equal statements are one cause: a second reading of the same device is another piece of knowledge
         size = given.measured if given.measured is not None else given.at_most if given.at_most is not None else 0.0
         said = f"{entry.what.replace('_', ' ').replace('runout', 'run-out')} {show(size, 'um', 3).replace('.000', '')}"
-        shared = replace(cause, key=f"{given.device}, mark kept: {said}")
+        shared = replace(cause, key=f"{given.device}, mark kept: {said}", shared=True)
         seen = turned.to_part(Account.of(shared))
         return seen * float(turned.sg) if lean else seen
     return Account.of(cause)

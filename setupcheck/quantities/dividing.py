@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from collections.abc import Iterator
+
 from setupcheck.division.methods import rounded_settings
 from setupcheck.jobfile.setups import Cut, Divide
 from setupcheck.ledger.account import Account
@@ -39,19 +41,12 @@ def divided(
                     Cause(f"{head}: error of the device", "undetermined", op, missing=f"{path}.wheel"), "angle", 0.0
                 )
             )
-        for owner, key in ((divide.wheel, "wheel"), (divide.worm, "worm")):
-            if owner is None:
-                continue
-            if owner.once_per_turn is not None:
-                wave(f"once per turn of the {key}", owner.once_per_turn, 1, f"{key}.once_per_turn")
-            if owner.twice_per_turn is not None:
-                wave(f"twice per turn of the {key}", owner.twice_per_turn, 2, f"{key}.twice_per_turn")
-            if owner.once_per_crank is not None:
-                if worm_ratio is None:
-                    missing = Cause(f"{head}: once per crank turn", "undetermined", op, missing=f"setups.{op}.machine")
-                    scatter.append(Scatter(missing, "angle", 0.0))
-                else:
-                    wave("once per crank turn", owner.once_per_crank, worm_ratio, f"{key}.once_per_crank")
+        for what, amplitude, waves_per_turn, key in _systematic(divide, worm_ratio):
+            if waves_per_turn is None:
+                missing = Cause(f"{head}: {what}", "undetermined", op, missing=f"setups.{op}.machine")
+                scatter.append(Scatter(missing, "angle", 0.0))
+            else:
+                wave(what, amplitude, waves_per_turn, key)
         for what, bound, key in (("setting", divide.setting, "setting"), ("clamping shift", divide.clamp, "clamp")):
             if bound:
                 cause = Cause(f"{head}: {what}", "length", op, high=bound, paths=(f"{path}.{key}",))
@@ -83,6 +78,27 @@ def divided(
         tuple(drift),
         _table_offset(cut, op, name, pattern.radius)[0],
     )
+
+
+def _systematic(divide: Divide, worm_ratio: int | None) -> Iterator[tuple[str, float, int | None, str]]:
+    """(name, amplitude, waves per turn of the work, key) of each systematic error; no number of waves without a ratio.
+
+    The wheel of the head turns with the work, its worm once per turn of the crank: `worm_ratio` times as often.
+    """
+    for owner, key, turns in ((divide.wheel, "wheel", 1), (divide.worm, "worm", worm_ratio)):
+        if owner is None:
+            continue
+        if owner.once_per_turn:
+            yield f"once per turn of its {key}", owner.once_per_turn, turns, f"{key}.once_per_turn"
+        if owner.twice_per_turn:
+            yield (
+                f"twice per turn of its {key}",
+                owner.twice_per_turn,
+                None if turns is None else 2 * turns,
+                f"{key}.twice_per_turn",
+            )
+        if owner.once_per_crank:
+            yield "once per crank turn", owner.once_per_crank, worm_ratio, f"{key}.once_per_crank"
 
 
 def _table_offset(cut: Cut, op: int, name: str, radius: float) -> tuple[Account, Account]:

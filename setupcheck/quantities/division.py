@@ -65,7 +65,7 @@ def circles(floor: Floor, setup: Setup, worm_ratio: int, count: int) -> str | No
 def crank_error(setup: Setup) -> float | None:
     """Amplitude of the error that comes once per turn of the crank [rad]. Source: the job file."""
     worm = setup.divide.worm if setup.divide is not None else None
-    return worm.once_per_crank if worm is not None and worm.once_per_crank else None
+    return (worm.once_per_crank or worm.once_per_turn or None) if worm is not None else None
 
 
 def folded_harmonic(crank_error: float, worm_ratio: int, count: int) -> float | None:

@@ -5,7 +5,7 @@ from __future__ import annotations
 from dataclasses import replace
 
 from setupcheck.jobfile.models import Deviation, Machine, Toothing
-from setupcheck.jobfile.names import MACHINE_KINDS
+from setupcheck.jobfile.names import MACHINE_KINDS, Ref
 from setupcheck.jobfile.reading import LoadedJob
 from setupcheck.jobfile.setups import Cut, Join, Setup
 from setupcheck.ledger import route
@@ -121,7 +121,7 @@ def _cut(floor: Floor, held: Held, placing: Placing, name: str, cut: Cut) -> Non
         floor.z(ref.part, outline(node).low),
         floor.z(ref.part, cut.to) if cut.to is not None else None,
     )
-    error, turn = _machine_error(floor, setup, ref.surface), Account()
+    error, turn = _machine_error(floor, setup, ref), Account()
     if target.pattern is not None:
         fresh = tooth_pattern(node, _worm_angle(loaded, ref.part))
         assert fresh is not None
@@ -180,9 +180,11 @@ def _dial(setup: Setup, cut: Cut, name: str, teeth: bool) -> Account:
     return length_error(given, Entry(words, op, path, "dial"))
 
 
-def _machine_error(floor: Floor, setup: Setup, name: str) -> Account:
+def _machine_error(floor: Floor, setup: Setup, ref: Ref) -> Account:
     """Error motion of the machine's own axis, new for each cut [mm]."""
     called, machine = machine_of(floor.loaded, setup)
+    twice = sum(ref.surface in part.surfaces for part in floor.loaded.job.parts.values()) > 1
+    name = f"{ref.part}.{ref.surface}" if twice else ref.surface
     op = setup.op
     if machine is None:
         return Account.of(
@@ -227,29 +229,35 @@ def _join(floor: Floor, setup: Setup, join: Join) -> None:
         f"op {op}, angle at which {outer.part} was put on {inner.part}", "ring", op, high=1.0, mode="derived"
     )
 
+    clock = Account()
+    if turn is None:
+        missing = f"setups.{op}.join.mounted_at"
+        clock = Account.of(Cause(f"op {op}: where the parts are clocked", "undetermined", op, missing=missing)).along(1)
+
     def moved(state: State, offset: Account, lean: Account, axial: Account) -> State:
-        clock = (
-            Account.of(
-                Cause(
-                    f"op {op}: where the parts are clocked", "undetermined", op, missing=f"setups.{op}.join.mounted_at"
-                )
-            ).along(1)
-            if turn is None
-            else Account()
-        )
         return route.joined(state, seat, offset=offset, lean=lean, axial=axial, clock=clock, unknown=turned)
 
     still = Account()
+    seated = moved(journal, still, still, still)
+    low, high = max(bore.low, seated.low), min(bore.high, seated.high)
+    if high <= low:
+        raise floor.problem(
+            f"setups.{op}.join",
+            f"{outer} from {bore.low:g} to {bore.high:g} mm and {inner} from {seated.low:g} to {seated.high:g} mm "
+            "do not meet where the stop brings them",
+            "Check the sizes along the axis and the faces of the stop",
+        )
+    near, far = _fit_errors(floor, op, join, bore)
     lean = _joint_lean(
         op,
         join,
-        bore,
-        moved(journal, still, still, still),
+        bore.lean - (far - near) * (1.0 / (high - low)) - seated.lean,
         face,
         moved(shoulder, still, still, still) if shoulder is not None else None,
     )
+    middle_z = (low + high) / 2.0  # the parts touch where bore and journal overlap, so the joint turns about its middle
     level = moved(journal, still, lean, still)
-    offset = bore.axis_at(bore.z) - _fit_error(floor, op, join, bore) - level.axis_at(bore.z)
+    offset = bore.axis_at(middle_z) - (near + far) * 0.5 - level.axis_at(middle_z)
     axial = Account.of(
         Cause(f"op {op}: where the joint is stopped", "undetermined", op, missing=f"setups.{op}.join.stop")
     ).along(1)
@@ -283,6 +291,11 @@ def _join(floor: Floor, setup: Setup, join: Join) -> None:
     for states in other.states.values():
         for state in states:
             body.add(moved(state, offset, lean, axial))
+    for op_before, placing in floor.placings.items():
+        if floor.bodies[floor.part_of[op_before]] is other:
+            floor.placings[op_before] = route.joined_placing(
+                placing, seat, offset=offset, lean=lean, axial=axial, clock=clock, unknown=turned
+            )
     for name in (name for name, old in floor.bodies.items() if old is other):
         own, way = floor.frames.get(name, (1, 0.0))
         floor.frames[name] = (sense * own, sense * way + shift)
@@ -335,32 +348,34 @@ def _contact_faces(
     return face, shoulder, middle, error
 
 
-def _joint_lean(
-    op: int, join: Join, bore: State, journal: State, face: State | None, shoulder: State | None
-) -> Account:
+def _joint_lean(op: int, join: Join, of_fit: Account, face: State | None, shoulder: State | None) -> Account:
     """tau: the lean the inner frame takes on, from the long fit (`bore`) or from the faces (`shoulder`)."""
     if join.square == "bore":
-        return bore.lean - journal.lean
+        return of_fit
     if join.square == "shoulder" and face is not None and shoulder is not None:
         return face.lean - shoulder.lean
     missing = f"setups.{op}.join.{'stop' if join.square == 'shoulder' else 'square'}"
     return Account.of(Cause(f"op {op}: how the joint leans", "undetermined", op, missing=missing))
 
 
-def _fit_error(floor: Floor, op: int, join: Join, bore: State) -> Account:
-    """epsilon of a joint: none for an interference fit, the play of a sliding one, or what the planner states."""
-    total, path = Account(), f"setups.{op}.join"
+def _fit_errors(floor: Floor, op: int, join: Join, bore: State) -> tuple[Account, Account]:
+    """epsilon of a joint at the low and the high end of the fit: none for an interference fit, play, or what is stated.
+
+    A long fit that rules the lean has its error at both ends, each for itself (one play, two directions); a short one that
+    the shoulder squares has one error for the whole of it, and so has a reading with a direction.
+    """
+    path, long = f"setups.{op}.join", join.square == "bore"
     name = f"op {op}, {bore.name} on its seat"
-    if join.clearance is not None or join.by == "slide":
-        total += play(
-            join.clearance, Entry(f"{name}: clearance", op, f"{path}.clearance", join.by), rests=join.rests or "free"
-        )
-    if join.fit_error is not None or join.by in ("taper", "screw", "bond"):
-        total += run_out(
-            join.fit_error,
-            Entry(f"{name}: run-out", op, f"{path}.fit_error", join.by),
-            inside=True,
-            towards=floor.in_body(bore.part, stated_direction(join.fit_error.high_at if join.fit_error else None)),
-            turned=Turned(),
-        )
-    return total
+    towards = floor.in_body(bore.part, stated_direction(join.fit_error.high_at if join.fit_error else None))
+    ends = []
+    for end in (" at its low end", " at its high end"):
+        total = Account()
+        if join.clearance is not None or join.by == "slide":
+            entry = Entry(f"{name}: clearance{end if long else ''}", op, f"{path}.clearance", join.by)
+            total += play(join.clearance, entry, rests=join.rests or "free", pair=f"{name}: play" if long else "")
+        if join.fit_error is not None or join.by in ("taper", "screw", "bond"):
+            one = long and towards.angle is None
+            entry = Entry(f"{name}: run-out{end if one else ''}", op, f"{path}.fit_error", join.by)
+            total += run_out(join.fit_error, entry, inside=True, towards=towards, turned=Turned())
+        ends.append(total)
+    return ends[0], ends[1]

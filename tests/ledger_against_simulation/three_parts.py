@@ -74,9 +74,13 @@ def _with_ring(route: Route, rng: Rng) -> Route | None:
     ring = _ring(rng)
     looks = next(s.facing for s in ring.surfaces if f"ring.{s.name}" == on)
     way = -looks * route.surface(against).facing
+    wall, cylinder_mid = route.surface(against), route.surface(inner).mid
+    spacer = wall.facing * (cylinder_mid - wall.mid) - 10.0  # the hole's middle comes over the middle of the cylinder
+    if spacer < 0.0:
+        return None
     squares = bool(rng.random() < 0.5)
-    radius = 0.5 * min(180.0, route.surface(against).diameter)
-    seat = Seat(on, against, 0.8, 0.004) if squares else Seat(on, against, 0.8, 0.004, "ring", radius)
+    radius = 0.5 * min(180.0, wall.diameter)
+    seat = Seat(on, against, spacer, 0.004) if squares else Seat(on, against, spacer, 0.004, "ring", radius)
     join = Join(
         op=0,
         outer="ring.hole",

@@ -140,7 +140,7 @@ def _blank(rng: Rng) -> Part:
             face(f"step{k}", float(ends[k]), 1 if across[k - 1] > across[k] else -1, float(max(across[k - 1 : k + 1])))
         )
     parting = float(rng.uniform(0.3, 0.7)) * total
-    surfaces += [bore("bore", 30.0, 0.0, parting), bore("recess", 36.0, parting, total)]
+    surfaces += [bore("bore", 30.0, 0.0, parting), bore("recess", 30.3, parting, total)]
     seat = int(rng.integers(4))
     count = int(rng.integers(8, 100))
     pressure = math.radians(float(rng.choice([14.5, 20.0, 25.0])))
@@ -161,7 +161,7 @@ def _spindle(rng: Rng) -> Part:
     long = float(rng.uniform(40.0, 120.0))
     surfaces = (
         cylinder("bearings", 40.0, -long, -5.0),
-        cylinder("journal", 30.0, 0.0, 60.0),
+        cylinder("journal", 30.0, -170.0, 230.0),  # long enough for every bore to sit on it with its whole length
         cylinder("end", 25.0, 60.0, 90.0),
         face("shoulder", 0.0, +1, 60.0),
         face("tip", 90.0, +1, 25.0),
