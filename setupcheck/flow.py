@@ -12,7 +12,7 @@ from setupcheck.quantities.book import Book, Known, Scope
 from setupcheck.quantities.facts import UnknownFact, facts_of
 from setupcheck.quantities.gates import Gate, gates
 from setupcheck.quantities.judged import Result
-from setupcheck.quantities.remedies import Remedy, remedy
+from setupcheck.quantities.remedies import Remedy, remedies
 from setupcheck.quantities.route import walk
 from setupcheck.quantities.scopes import scopes
 from setupcheck.quantities.shop import Floor
@@ -94,8 +94,8 @@ def review(job: LoadedJob | str | Path, *, house: str | Path | None = None, on: 
         found,
         verdict(found.findings, found.cautions),
         results,
-        tuple(gates(book.scopes, list(results.values()))),
-        {key: remedy(loaded, r) for key, r in results.items() if r.margin is not None and r.margin < 0.0},
+        tuple(gates(book.scopes, list(results.items()))),
+        remedies(loaded, results),
         on,
     )
 

@@ -3,25 +3,30 @@
 from __future__ import annotations
 
 import math
-from collections.abc import Sequence
-from dataclasses import dataclass
+from collections.abc import Callable, Sequence
+from dataclasses import dataclass, fields, replace
 
-from setupcheck.ledger.causes import Cause
+from setupcheck.jobfile.models import Deviation
+from setupcheck.ledger.account import Account
+from setupcheck.ledger.causes import TRUNCATION, TRUNCATION_2D, Cause
 from setupcheck.ledger.figures import Figure, alternatives
 from setupcheck.quantities.book import Scope
 from setupcheck.quantities.judged import Result
 from setupcheck.quantities.scopes import HoldEntry
 
-STEP = 0.001
-"""Gates are rounded down to whole micrometres [mm]. Source: our screening choice."""
+FINE, COARSE, FINE_BELOW = 0.0001, 0.001, 0.010
+"""Gates are rounded down to 0.1 um below 10 um, to whole um above [mm]. Source: our screening choice."""
 
 
 @dataclass(frozen=True, slots=True)
 class Gate:
     """The largest dial reading a hold may show so that every requirement is still met at its worst.
 
-    reading  full indicator movement [mm], 0 where no reading will do; None where no requirement depends on it
-    planned  what the job file plans or has measured [mm];  by  name of the requirement that sets it
+    reading   full indicator movement [mm], 0 where no reading will do; None where no requirement depends on it
+    planned   what the job file plans, or has measured (`measured`) [mm];  by  instance of the stack that sets it
+    also      other operations held by the same device with its mark kept: one reading for all
+    least     the reading must not be below this: a known high spot takes away from another
+    high_at   where that high spot must stay
     """
 
     key: str
@@ -31,10 +36,26 @@ class Gate:
     reading: float | None
     planned: float
     by: str
+    measured: bool = False
+    also: tuple[int, ...] = ()
+    least: float = 0.0
+    high_at: str = ""
+
+
+def worst_excess(figure: Figure, low: float | None, high: float | None) -> float:
+    """How far the worst case goes beyond its limits; negative inside. Source: base and pushes of the figure."""
+    found = []
+    for one in alternatives(figure):
+        base, pushes = one.base(), one.pushes()
+        if high is not None:
+            found.append(base + sum(p.up for p in pushes) - high)
+        if low is not None:
+            found.append(low - base + sum(p.down for p in pushes))
+    return max(found, default=-math.inf)
 
 
 def room(figure: Figure, cause: Cause, *, low: float | None, high: float | None) -> float | None:
-    """Factor by which one cause may grow (or must shrink) until the figure's worst case meets its limit.
+    """Factor by which one cause without direction may grow (or must shrink) until the worst case meets its limit.
 
     1 + margin / push, over the places the figure is the worst of.  None where the cause does not reach the figure.
     Source: the worst case is linear in each bound, derived here.
@@ -52,29 +73,143 @@ def room(figure: Figure, cause: Cause, *, low: float | None, high: float | None)
     return min(found, default=None)
 
 
-def gates(scopes: Sequence[Scope], results: Sequence[Result]) -> list[Gate]:
-    """One gate for each hold entry whose error is a dial reading.
+def guard_of(given: Deviation) -> float:
+    """What the uncertainty of a measured reading adds to it in the worst case [mm]; 0 for a planned bound."""
+    if given.measured is None:
+        return 0.0
+    return (TRUNCATION_2D if given.high_at is not None else TRUNCATION) * given.u
+
+
+def reading_for(now: float, guard: float, factor: float) -> float:
+    """Dial reading at which a push that now comes from `now` + guard is `factor` times as large [mm], never below 0."""
+    return max(0.0, (now + guard) * factor - guard)
+
+
+def rounded_down(reading: float) -> float:
+    """A gate on the step of an indicator."""
+    step = FINE if reading < FINE_BELOW else COARSE
+    return math.floor(reading / step + 1e-6) * step
+
+
+def gates(scopes: Sequence[Scope], results: Sequence[tuple[str, Result]]) -> list[Gate]:
+    """One gate for each hold entry whose error is a dial reading; one for all holds of a device whose mark is kept.
 
     FIM = (limit - what all others need) / (figure per FIM), the smallest over the requirements.
     """
     found: list[Gate] = []
+    shared: dict[tuple[str, float, str], int] = {}
     for scope in scopes:
         entry = scope.node
         if not isinstance(entry, HoldEntry) or entry.key == "error" or entry.error is None or scope.op is None:
             continue
         given = entry.error
         planned = given.measured if given.measured is not None else given.at_most
-        if planned is None or planned == 0.0:
+        if not planned:
             continue
-        path = f"{scope.path}.{entry.key}"
-        best: tuple[float, str] | None = None
-        for result in results:
-            for cause in (s.cause for s in result.combined.shares if path in s.cause.paths):
-                grow = room(result.figure, cause, low=result.stack.low, high=result.stack.high)
-                if grow is not None and (best is None or grow < best[0]):
-                    best = (grow, result.stack.name)
-        reading = None
-        if best is not None:
-            reading = max(0.0, math.floor(best[0] * planned / STEP + 1e-6) * STEP)
-        found.append(Gate(scope.key, scope.op, entry.step, entry.entry.on, reading, planned, best[1] if best else ""))
+        if given.device and given.mark == "kept" and given.high_at is None:
+            same = (given.device, planned, entry.key)
+            if same in shared:
+                first = found[shared[same]]
+                found[shared[same]] = replace(first, also=(*first.also, scope.op))
+                continue
+            shared[same] = len(found)
+        gate = _gate(scope, entry, given, planned, results)
+        found.append(gate)
     return found
+
+
+def _gate(
+    scope: Scope, entry: HoldEntry, given: Deviation, planned: float, results: Sequence[tuple[str, Result]]
+) -> Gate:
+    path = f"{scope.path}.{entry.key}"
+    kept = f"{given.device}, mark kept: " if given.device and given.mark == "kept" else ""
+    lowest, highest, by = 0.0, math.inf, ""
+    directed = False
+    for key, result in results:
+        for cause in _causes(result.figure, path, kept):
+            directed = directed or bool(cause.mean)
+            low, high = _span(result, cause, planned, guard_of(given))
+            lowest = max(lowest, low)
+            if high < highest:
+                highest, by = high, key
+    assert scope.op is not None
+    reading = None if highest == math.inf else rounded_down(highest)
+    least = math.ceil(lowest / FINE - 1e-6) * FINE
+    return Gate(
+        scope.key,
+        scope.op,
+        entry.step,
+        entry.entry.on,
+        0.0 if reading is not None and reading < least else reading,
+        planned,
+        by,
+        measured=given.measured is not None,
+        least=least,
+        high_at=(given.high_at or "") if directed else "",
+    )
+
+
+def _causes(figure: Figure, path: str, kept: str) -> list[Cause]:
+    """Causes of a figure that one hold entry states, at any of the places the figure is the worst of."""
+    causes = {p.cause: None for one in alternatives(figure) for p in one.pushes()}
+    return [c for c in causes if path in c.paths or (kept and c.key.startswith(kept))]
+
+
+def _span(result: Result, cause: Cause, planned: float, guard: float) -> tuple[float, float]:
+    """(least, largest) dial reading at which one requirement is met; (0, 0) where none will do."""
+    low, high = result.stack.low, result.stack.high
+    if not cause.mean:
+        factor = room(result.figure, cause, low=low, high=high)
+        return (0.0, math.inf) if factor is None else (0.0, reading_for(planned, guard, factor))
+
+    def excess(reading: float) -> float:
+        other = replace(cause, mean=cause.mean * (reading / planned))
+        return worst_excess(with_cause(result.figure, cause, other), low, high)
+
+    return _interval(excess, planned)
+
+
+def _interval(excess: Callable[[float], float], planned: float) -> tuple[float, float]:
+    """Where a convex function of the reading is not above zero; (0, 0) where it is nowhere.
+
+    The worst case is convex in the length of one known vector (a norm of an affine function), so the best reading is found
+    by thirds and both ends by halving.  Source: textbook search, derived here.
+    """
+    left, right = 0.0, 20.0 * planned + 1.0
+    a, b = left, right
+    for _ in range(80):
+        third = (b - a) / 3.0
+        if excess(a + third) <= excess(b - third):
+            b -= third
+        else:
+            a += third
+    best = (a + b) / 2.0
+    if excess(best) > 0.0:
+        return 0.0, 0.0
+
+    def edge(inside: float, outside: float) -> float:
+        for _ in range(60):
+            half = (inside + outside) / 2.0
+            inside, outside = (half, outside) if excess(half) <= 0.0 else (inside, half)
+        return inside
+
+    low = 0.0 if excess(left) <= 0.0 else edge(best, left)
+    return low, math.inf if excess(right) <= 0.0 else edge(best, right)
+
+
+def with_cause(figure: Figure, old: Cause, new: Cause) -> Figure:
+    """The same figure with one cause replaced in all its accounts."""
+
+    def swapped(account: Account) -> Account:
+        if old not in account.terms:
+            return account
+        return Account(account.constant, {new if c == old else c: ab for c, ab in account.terms.items()})
+
+    changed: dict[str, object] = {}
+    for f in fields(figure):  # type: ignore[arg-type]
+        value = getattr(figure, f.name)
+        if isinstance(value, Account):
+            changed[f.name] = swapped(value)
+        elif isinstance(value, tuple) and value and isinstance(value[0], Account):
+            changed[f.name] = tuple(swapped(a) for a in value)
+    return replace(figure, **changed)  # type: ignore[type-var]
