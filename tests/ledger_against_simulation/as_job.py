@@ -227,7 +227,7 @@ class Writer:
             }
         device = f"plate {by.slope.real:.9f} {by.slope.imag:.9f}"
         self.truth.values[f"setups.{setup.op}.hold.square.face_runout", ""] = by.slope
-        return {"on": on, "across": 100, "face_runout": {"at_most": BOUND, "device": device, "mark": "kept"}}
+        return {"on": on, "across": 10, "face_runout": {"at_most": BOUND, "device": device, "mark": "kept"}}
 
     def _cut(self, setup: Setup, cut: Turn | CutTeeth | Drill) -> Node:
         name = cut.surface.partition(".")[2]
@@ -270,7 +270,7 @@ class Writer:
             "stop": {"on": join.seat.on, "against": join.seat.against, "spacers": spacers},
             **told,
         }
-        self.truth.values[f"setups.{join.op}.join.stop.spacers.0.length", ""] = complex(join.seat.spacer_error)
+        self.truth.values[f"setups.{join.op}.join.stop.spacers[1].length", ""] = complex(join.seat.spacer_error)
         if not join.offset:
             return {"op": join.op, "join": node | {"by": "shrink"}}
         node |= {"by": "bond", "fit_error": reading(play, sign=-1.0, per=0.5)}
@@ -341,7 +341,7 @@ def _relations(part: Part) -> list[Node]:
     for given in part.existing[1:]:
         s = by_name[given.surface]
         if s.kind == "face":
-            across = 50.0
+            across = 0.5 * s.diameter
             lean = reading(given.lean - root.lean, sign=-float(s.facing), per=1.0 / across)
             found.append({"of": s.name, "about": root.surface, "face_runout": lean, "across": across})
             if first_face is None:

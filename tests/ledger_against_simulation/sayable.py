@@ -125,7 +125,7 @@ def _read_by_a_dial(hold: CentredAndSquared | TwoPlanes, rng: Rng) -> CentredAnd
         return TwoPlanes(centre(hold.first), centre(hold.second))
     square = hold.square
     if isinstance(square.by, Lean):
-        by = FaceDial(80.0 * abs(square.by.slope), 80.0, float(rng.uniform(-3, 3)))
+        by = FaceDial(20.0 * abs(square.by.slope), 20.0, float(rng.uniform(-3, 3)))  # a circle that lies on every face
         square = dataclasses.replace(square, by=by)
     return CentredAndSquared(centre(hold.centre), square)
 

@@ -38,7 +38,7 @@ def three_part_route(rng: Rng) -> Sayable:
             return dataclasses.replace(found, route=longer, mounting_said=True)
 
 
-def _ring(rng: Rng) -> Part:
+def _ring(rng: Rng, hole: float) -> Part:
     def off() -> complex:
         return cmath.rect(float(rng.uniform(0.001, 0.02)), float(rng.uniform(-3, 3)))
 
@@ -48,7 +48,7 @@ def _ring(rng: Rng) -> Part:
     tilt = lean()
     surfaces = (
         cylinder("outside", 200.0, 0.0, 20.0),
-        bore("hole", 60.0, 0.0, 20.0),
+        bore("hole", hole, 0.0, 20.0),
         face("top", 20.0, +1, 180.0),
         face("bottom", 0.0, -1, 180.0),
     )
@@ -71,7 +71,7 @@ def _with_ring(route: Route, rng: Rng) -> Route | None:
         return None
     inner, against = str(rng.choice(seats)), str(rng.choice(walls))
     on = "ring.bottom" if rng.random() < 0.5 else "ring.top"
-    ring = _ring(rng)
+    ring = _ring(rng, route.surface(inner).diameter)
     looks = next(s.facing for s in ring.surfaces if f"ring.{s.name}" == on)
     way = -looks * route.surface(against).facing
     wall, cylinder_mid = route.surface(against), route.surface(inner).mid

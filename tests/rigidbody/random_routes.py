@@ -236,13 +236,14 @@ def _hold(shop: _Shop, part: str, within: tuple[str, ...]) -> CentredAndSquared 
         return _two_planes(shop, part, round_)
     on = _pick(rng, round_)
     z = shop.height(on.partition(".")[0], part, shop.place_on(on, float(rng.uniform(0, 1))))
-    across = float(rng.uniform(40.0, 120.0))
+    squared = _pick(rng, flat)
+    across = float(rng.uniform(0.5, 0.95)) * shop.surfaces[squared].diameter
     by: Lean | FaceDial
     if _either(rng):
         by = Lean(_slope(rng))
     else:
         by = FaceDial(min(_um(rng, 1, 50), STEEPEST * across), across, _angle(rng))
-    return CentredAndSquared(Centre(on, z, _by(rng)), Square(_pick(rng, flat), by))
+    return CentredAndSquared(Centre(on, z, _by(rng)), Square(squared, by))
 
 
 def _stop(shop: _Shop, within: tuple[str, ...], squares: str) -> PointStop | RingStop | NoStop:
