@@ -117,13 +117,13 @@ def stack_results(book: Book) -> dict[str, Result]:
 
 def _waivers(loaded: LoadedJob) -> list[Waiver]:
     return [
-        Waiver(w.rule, w.at, w.reason, w.until or "", f"waive.{i}", loaded.line(f"waive.{i}"))
+        Waiver(w.rule, w.at, w.reason, w.until or "", f"waive[{i + 1}]", loaded.line(f"waive[{i + 1}]"))
         for i, w in enumerate(loaded.job.waive)
     ]
 
 
 def _answers(loaded: LoadedJob) -> list[Answer]:
     return [
-        Answer(c.caution, c.op, c.by, c.note or "", f"checked.{i}", loaded.line(f"checked.{i}"))
+        Answer(c.caution, c.op, c.by, c.note or "", f"checked[{i + 1}]", loaded.line(f"checked[{i + 1}]"))
         for i, c in enumerate(loaded.job.checked)
     ]

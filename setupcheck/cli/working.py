@@ -1,4 +1,4 @@
-"""`setupcheck working JOB QUANTITY[@INSTANCE]`: how a number came about."""
+"""`setupcheck working JOB QUANTITY`: how a number came about."""
 
 from __future__ import annotations
 
@@ -14,13 +14,15 @@ def command(
     quantity: Annotated[
         str,
         typer.Argument(
-            metavar="QUANTITY[@INSTANCE]", help="Such as stack.worst or datum.state@30/centre.", show_default=False
+            metavar="QUANTITY",
+            help="A requirement (require[6], mid-plane, or its name in the report), or a number such as hold.reach@30/teeth.",
+            show_default=False,
         ),
     ],
 ) -> None:
     """Show formula, inputs with their lines, source and evidence of one number.
 
-    Example: setupcheck working jobs/index-plate.yaml stack.worst@position
+    Example: setupcheck working jobs/index-plate.yaml require[1]
     """
     from setupcheck.flow import load_job, prepare
     from setupcheck.report.working import as_working

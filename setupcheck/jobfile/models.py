@@ -263,7 +263,9 @@ class Relation(Shop):
         if self.about is not None and self.runout is None and self.face_runout is None:
             raise ValueError("a relation `about` an axis needs runout or face_runout. Write runout: 3 um")
         if self.face_runout is not None and self.across is None:
-            raise ValueError("face_runout needs the circle it was read on. Write across: 56")
+            raise ValueError(
+                "face_runout needs the circle it was read on. Write across: and the diameter of that circle"
+            )
         return self
 
 

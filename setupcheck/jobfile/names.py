@@ -5,6 +5,7 @@ from __future__ import annotations
 from collections.abc import Iterator, Mapping, Sequence
 from dataclasses import dataclass
 
+from setupcheck.jobfile.nodes import list_of, map_of, name_of
 from setupcheck.notation import nearest, quoted
 
 MACHINE_KINDS = ("lathe", "dividing-head", "rotary-table", "mill", "grinder", "drill-press", "jig-borer", "press")
@@ -97,17 +98,17 @@ def uses(data: Mapping[str, object]) -> Uses:
     cut: set[tuple[str, str]] = set()
     removed: set[tuple[str, str]] = set()
     held: list[tuple[tuple[str | int, ...], str, str]] = []
-    for i, node in enumerate(_list(data.get("setups"))):
-        setup = _map(node)
-        own = _name(setup.get("part"))
-        for name, entry in _map(setup.get("cut")).items():
+    for i, node in enumerate(list_of(data.get("setups"))):
+        setup = map_of(node)
+        own = name_of(setup.get("part"))
+        for name, entry in map_of(setup.get("cut")).items():
             if isinstance(found := find_surface(str(name), surfaces, own), Ref):
                 cut.add((found.part, found.surface))
-            for gone in _list(_map(entry).get("removes")):
+            for gone in list_of(map_of(entry).get("removes")):
                 if isinstance(found := find_surface(str(gone), surfaces, own), Ref):
                     removed.add((found.part, found.surface))
         for step in HOLDS:
-            on = _name(_map(_map(setup.get("hold")).get(step)).get("on"))
+            on = name_of(map_of(map_of(setup.get("hold")).get(step)).get("on"))
             if on is not None and isinstance(found := find_surface(on, surfaces, own), Ref):
                 held.append((("setups", i, "hold", step, "on"), found.part, found.surface))
     return Uses(frozenset(cut), frozenset(removed), tuple(held))
@@ -115,21 +116,21 @@ def uses(data: Mapping[str, object]) -> Uses:
 
 def surfaces_of(data: Mapping[str, object]) -> dict[str, tuple[str, ...]]:
     """Surface names by part, in the raw file."""
-    return {str(p): tuple(_map(_map(node).get("surfaces"))) for p, node in _map(data.get("parts")).items()}
+    return {str(p): tuple(map_of(map_of(node).get("surfaces"))) for p, node in map_of(data.get("parts")).items()}
 
 
 def misses(data: Mapping[str, object]) -> Iterator[Miss]:
     """All names in the raw file that mean nothing. Works on the tree, so it finds them even where values are wrong too."""
     surfaces = surfaces_of(data)
     yield from _unnameable(data, surfaces)
-    for part, node in _map(data.get("parts")).items():
-        for i, relation in enumerate(_list(_map(node).get("given"))):
+    for part, node in map_of(data.get("parts")).items():
+        for i, relation in enumerate(list_of(map_of(node).get("given"))):
             for key in ("of", "about", "from"):
-                yield from _surface(_map(relation).get(key), ("parts", part, "given", i, key), surfaces, str(part))
+                yield from _surface(map_of(relation).get(key), ("parts", part, "given", i, key), surfaces, str(part))
     seen: list[int] = []
-    for i, setup in enumerate(_list(data.get("setups"))):
-        yield from _setup_misses(_map(setup), ("setups", i), data, surfaces, seen)
-        op = _map(setup).get("op")
+    for i, setup in enumerate(list_of(data.get("setups"))):
+        yield from _setup_misses(map_of(setup), ("setups", i), data, surfaces, seen)
+        op = map_of(setup).get("op")
         if isinstance(op, int) and not isinstance(op, bool):
             if op in seen:
                 yield Miss(("setups", i, "op"), f"operation {op} is there twice. Write the next free number")
@@ -139,25 +140,25 @@ def misses(data: Mapping[str, object]) -> Iterator[Miss]:
                     f"operation {op} stands after {max(seen)}. Write the setups in the order they are done",
                 )
             seen.append(op)
-    for i, wanted in enumerate(_list(data.get("require"))):
-        if _map(wanted).get("what") != "torque":
+    for i, wanted in enumerate(list_of(data.get("require"))):
+        if map_of(wanted).get("what") != "torque":
             for key in ("of", "about", "clock"):
-                yield from _surface(_map(wanted).get(key), ("require", i, key), surfaces, None)
-        elif _map(wanted).get("of") is not None and not _is_join(data, _map(wanted).get("of")):
+                yield from _surface(map_of(wanted).get(key), ("require", i, key), surfaces, None)
+        elif map_of(wanted).get("of") is not None and not _is_join(data, map_of(wanted).get("of")):
             yield Miss(
-                ("require", i, "of"), f"operation {_map(wanted).get('of')} joins nothing. Write the op of the joining"
+                ("require", i, "of"), f"operation {map_of(wanted).get('of')} joins nothing. Write the op of the joining"
             )
-    place = _map(data.get("place"))
+    place = map_of(data.get("place"))
     yield from _surface(place.get("axis"), ("place", "axis"), surfaces, None)
-    yield from _surface(_map(place.get("worm_axis")).get("from"), ("place", "worm_axis", "from"), surfaces, None)
-    yield from _surface(_map(data.get("mesh")).get("wheel"), ("mesh", "wheel"), surfaces, None)
+    yield from _surface(map_of(place.get("worm_axis")).get("from"), ("place", "worm_axis", "from"), surfaces, None)
+    yield from _surface(map_of(data.get("mesh")).get("wheel"), ("mesh", "wheel"), surfaces, None)
 
 
 def _unnameable(data: Mapping[str, object], surfaces: Mapping[str, Sequence[str]]) -> Iterator[Miss]:
     """Names with a character that parts a name from its part or its operation."""
     named: list[tuple[str, ...]] = [("parts", part) for part in surfaces]
     named += [("parts", part, "surfaces", name) for part in surfaces for name in surfaces[part]]
-    named += [(kind, name) for kind in ("machines", "cutters") for name in _map(data.get(kind))]
+    named += [(kind, name) for kind in ("machines", "cutters") for name in map_of(data.get(kind))]
     for path in named:
         name = path[-1]
         if any(c in name for c in ".@/") or name != name.strip() or not name.isprintable():
@@ -171,11 +172,11 @@ def _setup_misses(
     surfaces: Mapping[str, Sequence[str]],
     before: Sequence[int],
 ) -> Iterator[Miss]:
-    own = _name(setup.get("part"))
+    own = name_of(setup.get("part"))
     if own is not None and own not in surfaces:
         yield Miss((*at, "part"), f"there is no part {quoted(own)}. {_offer(own, surfaces, '')}")
         own = None
-    machine, machines = _name(setup.get("machine")), _map(data.get("machines"))
+    machine, machines = name_of(setup.get("machine")), map_of(data.get("machines"))
     if machine is not None and machine not in machines and machine not in MACHINE_KINDS:
         yield Miss(
             (*at, "machine"),
@@ -187,35 +188,35 @@ def _setup_misses(
             (*at, "keeps"), f"no operation {keeps} comes before this one. Write the op whose holding was never opened"
         )
     for hold in HOLDS:
-        entry = _map(_map(setup.get("hold")).get(hold))
+        entry = map_of(map_of(setup.get("hold")).get(hold))
         yield from _surface(entry.get("on"), (*at, "hold", hold, "on"), surfaces, own)
-    cutters = _map(data.get("cutters"))
-    for name, cut in _map(setup.get("cut")).items():
+    cutters = map_of(data.get("cutters"))
+    for name, cut in map_of(setup.get("cut")).items():
         found = find_surface(str(name), surfaces, own)
         if isinstance(found, str):
             yield Miss((*at, "cut", name), found, key=True)
-        cutter = _name(_map(cut).get("cutter"))
+        cutter = name_of(map_of(cut).get("cutter"))
         if cutter is not None and cutter not in cutters:
             yield Miss(
                 (*at, "cut", name, "cutter"), f"there is no cutter {quoted(cutter)}. {_offer(cutter, cutters, '')}"
             )
-        for i, gone in enumerate(_list(_map(cut).get("removes"))):
+        for i, gone in enumerate(list_of(map_of(cut).get("removes"))):
             yield from _surface(gone, (*at, "cut", name, "removes", i), surfaces, own)
-        yield from _surface(_map(cut).get("from_surface"), (*at, "cut", name, "from_surface"), surfaces, own)
-        depth = _map(cut).get("depth_from")
+        yield from _surface(map_of(cut).get("from_surface"), (*at, "cut", name, "from_surface"), surfaces, own)
+        depth = map_of(cut).get("depth_from")
         touched = depth.get("surface") if isinstance(depth, dict) else depth
         yield from _surface(touched, (*at, "cut", name, "depth_from"), surfaces, own)
-    join = _map(setup.get("join"))
+    join = map_of(setup.get("join"))
     for key in ("outer", "inner"):
         yield from _surface(join.get(key), (*at, "join", key), surfaces, None)
     for key in ("on", "against"):
-        yield from _surface(_map(join.get("stop")).get(key), (*at, "join", "stop", key), surfaces, None)
+        yield from _surface(map_of(join.get("stop")).get(key), (*at, "join", "stop", key), surfaces, None)
 
 
 def _surface(
     text: object, path: tuple[str | int, ...], surfaces: Mapping[str, Sequence[str]], part: str | None
 ) -> Iterator[Miss]:
-    name = _name(text)
+    name = name_of(text)
     if name is not None:
         found = find_surface(name, surfaces, part)
         if isinstance(found, str):
@@ -223,19 +224,4 @@ def _surface(
 
 
 def _is_join(data: Mapping[str, object], of: object) -> bool:
-    return any(str(_map(s).get("op")) == str(of) and _map(s).get("join") for s in _list(data.get("setups")))
-
-
-def _name(node: object) -> str | None:
-    """The name that an entry stands for; the models take a bare number for a name too."""
-    if isinstance(node, str) or (isinstance(node, int | float) and not isinstance(node, bool)):
-        return str(node)
-    return None
-
-
-def _map(node: object) -> Mapping[str, object]:
-    return node if isinstance(node, dict) else {}
-
-
-def _list(node: object) -> Sequence[object]:
-    return node if isinstance(node, list) else ()
+    return any(str(map_of(s).get("op")) == str(of) and map_of(s).get("join") for s in list_of(data.get("setups")))

@@ -15,10 +15,11 @@ from pydantic import BaseModel, TypeAdapter, ValidationError
 from pydantic_core import ErrorDetails
 
 from setupcheck.errors import JobError, Problem
-from setupcheck.jobfile import names, sense
+from setupcheck.jobfile import cuts, directions, given, joints, names, reach, sense
+from setupcheck.jobfile.drawing import drawing_of
 from setupcheck.jobfile.models import Require, Surface
 from setupcheck.jobfile.setups import Job
-from setupcheck.notation import nearest, plain, quoted
+from setupcheck.notation import Units, nearest, plain, quoted
 from setupcheck.yamlfile import Data, Place, Tree, parse, read_text
 
 Loc = tuple[str | int, ...]
@@ -39,26 +40,29 @@ class LoadedJob:
     sha256: str
 
     def loc(self, path: str) -> Loc:
-        """The way through the tree of a shop path: `setups.30.hold.centre` counts setups by their operation number.
+        """The way through the tree of a shop path. A setup is called by its operation number, an entry of any other
+        list by its number in brackets, counted from 1: `setups.30.hold.centre.through[1].runout`, `require[2]`.
 
         A key that holds points itself, as in `setups.30.cut.wheel.teeth.error`, is found as one step.
         """
         steps, found, node = path.split(".") if path else [], list[str | int](), self.tree.data
         while steps:
-            step: str | int = steps[0]
-            used = 1
             if isinstance(node, dict):
-                joined = (n for n in range(len(steps), 1, -1) if ".".join(steps[:n]) in node)
-                used = 1 if step in node else next(joined, 1)
-                step = ".".join(steps[:used])
-                node = node.get(step)
-            elif isinstance(node, list) and steps[0].isdecimal():
-                number = int(steps[0])
+                used, key, entry = _key(steps, node)
+                found.append(key)
+                node = node.get(key)
+                if entry is not None:
+                    found.append(entry)
+                    node = node[entry] if isinstance(node, list) and 0 <= entry < len(node) else None
+                del steps[:used]
+                continue
+            step: str | int = steps.pop(0)
+            if isinstance(node, list) and str(step).isdecimal():
+                step = int(step)  # an entry counted from 0, the former spelling of `require[1]`
                 if found == ["setups"]:
-                    number = next((i for i, s in enumerate(self.job.setups) if s.op == number), len(node))
-                step, node = number, node[number] if number < len(node) else None
+                    step = next((i for i, s in enumerate(self.job.setups) if s.op == step), len(node))
+                node = node[step] if step < len(node) else None
             found.append(step)
-            del steps[:used]
         return tuple(found)
 
     def line(self, path: str) -> int:
@@ -74,6 +78,20 @@ class LoadedJob:
         found = names.find_surface(text, self.surfaces(), part)
         assert isinstance(found, names.Ref), found
         return found
+
+
+_ENTRY = re.compile(r"(.+)\[([0-9]{1,6})\]")
+
+
+def _key(steps: Sequence[str], node: Mapping[str, Data]) -> tuple[int, str, int | None]:
+    """The key that the first steps name in a map: how many of them, the key, and the entry (from 0) of its list."""
+    if steps[0] in node:
+        return 1, steps[0], None
+    for used in range(len(steps), 1, -1):
+        if (joined := ".".join(steps[:used])) in node:
+            return used, joined, None
+    entry = _ENTRY.fullmatch(steps[0])
+    return (1, entry[1], int(entry[2]) - 1) if entry else (1, steps[0], None)
 
 
 def read_job(path: str | Path) -> LoadedJob:
@@ -113,7 +131,7 @@ def _behind_comma(problem: Problem, tree: Tree) -> bool:
 def _contradictions(data: Mapping[str, Data], job: Job | None) -> Iterator[names.Miss]:
     """What entries say against each other. Where the file has errors, the surfaces and requirements that can be read
     are compared all the same, so that one run tells everything."""
-    units: Literal["mm", "in"] = "in" if data.get("units") == "in" else "mm"
+    units: Units = "in" if data.get("units") == "in" else "mm"
     if job is not None:
         surfaces = {name: part.surfaces for name, part in job.parts.items()}
         asked = dict(enumerate(job.require))
@@ -124,7 +142,10 @@ def _contradictions(data: Mapping[str, Data], job: Job | None) -> Iterator[names
             nodes = part.get("surfaces") if isinstance(part, dict) else None
             surfaces[name] = _readable(TypeAdapter(Surface), nodes.items() if isinstance(nodes, dict) else (), units)
         asked = _readable(TypeAdapter(Require), enumerate(require) if isinstance(require, list) else (), units)
-    return sense.contradictions(surfaces, asked, names.uses(data), units=units)
+    yield from sense.contradictions(surfaces, asked, names.uses(data), units=units)
+    drawing = drawing_of(data, surfaces, units)
+    for check in (reach.beyond, directions.nowhere, joints.misfits, cuts.misstated, given.repeated):
+        yield from check(drawing)
 
 
 def _readable(adapter: TypeAdapter[T], entries: Iterable[tuple[K, Data]], units: str) -> dict[K, T]:

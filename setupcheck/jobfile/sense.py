@@ -12,10 +12,9 @@ from dataclasses import dataclass
 
 from setupcheck.jobfile.models import Flat, Pattern, Require, Round, Surface, Throat, Toothing
 from setupcheck.jobfile.names import Miss, Ref, Uses, find_surface
-from setupcheck.notation import plain
+from setupcheck.jobfile.types import size_shown
 
 TOUCH = 1e-6  # mm; two lengths that only touch do not overlap: far below every size, far above rounding; our choice
-INCH = 25.4  # mm, exactly
 
 LIMIT_KIND = {
     "index-range": "angle",
@@ -72,7 +71,7 @@ def contradictions(
     """
 
     def shown(mm: float) -> str:
-        return f"{plain(round(mm / INCH, 6))} in" if units == "in" else f"{plain(round(mm, 6))} mm"
+        return size_shown(mm, units)
 
     for part, surfaces in parts.items():
         for key, message in _part(part, surfaces, uses, shown):

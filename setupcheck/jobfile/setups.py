@@ -57,6 +57,7 @@ Device = Literal[
     "magnetic-chuck",
     "pot-chuck",
     "spindle",
+    "steady",
 ]
 
 
@@ -120,7 +121,9 @@ class Square(Shop):
     @model_validator(mode="after")
     def a_reading_has_its_circle(self) -> Square:
         if (self.face_runout is not None or self.chip is not None) and self.across is None:
-            raise ValueError("face_runout needs the circle it is read on. Write across: 100")
+            raise ValueError(
+                "face_runout needs the circle it is read on. Write across: and the diameter of that circle"
+            )
         return self
 
 

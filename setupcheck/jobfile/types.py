@@ -13,6 +13,7 @@ from setupcheck.notation import Amount
 Given = str | int | float
 TEXT_OR_NUMBER = WithJsonSchema({"type": ["string", "number"]})
 TEXT = WithJsonSchema({"type": "string"})
+INCH = 25.4  # mm, exactly (international yard and pound agreement, 1959)
 
 
 def units_of(info: ValidationInfo) -> Literal["mm", "in"]:
@@ -20,10 +21,15 @@ def units_of(info: ValidationInfo) -> Literal["mm", "in"]:
     return "in" if (info.context or {}).get("units") == "in" else "mm"
 
 
-def in_file_units(mm: float, info: ValidationInfo) -> str:
+def size_shown(mm: float, units: str) -> str:
     """A size for a message, in the units of the file: `96 mm`, `3.75 in`."""
-    value, unit = (mm / 25.4, "in") if units_of(info) == "in" else (mm, "mm")
+    value, unit = (mm / INCH, "in") if units == "in" else (mm, "mm")
     return f"{notation.plain(round(value, 6))} {unit}"
+
+
+def in_file_units(mm: float, info: ValidationInfo) -> str:
+    """A size for a message of a model, in the units of the file."""
+    return size_shown(mm, units_of(info))
 
 
 def _shown(given: object) -> str:
@@ -78,8 +84,10 @@ def _amounts(given: object, info: ValidationInfo) -> tuple[Amount, Amount]:
     if not isinstance(given, list) or len(given) != 2:
         raise ValueError(f"{_shown(given)} is not a pair of limits. Write [20 um, 80 um]")
     low, high = (_amount(g, info) for g in given)
-    if low.dimension != high.dimension or low.value > high.value:
-        raise ValueError(f"{_shown(given)} does not run from low to high in one kind of unit. Write [20 um, 80 um]")
+    if low.dimension != high.dimension:
+        raise ValueError(f"{_shown(given)} has limits in two kinds of unit. Write both in one, as in [20 um, 80 um]")
+    if low.value > high.value:
+        raise ValueError(f"{_shown(given)} runs from high to low. Write {_shown(given[::-1])}")
     return low, high
 
 

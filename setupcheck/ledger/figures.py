@@ -6,6 +6,7 @@ at its known value (`base`), and its value for a set of draws (`sample`). worst 
 
 from __future__ import annotations
 
+import math
 from dataclasses import dataclass, field
 from typing import TYPE_CHECKING, Protocol
 
@@ -241,15 +242,17 @@ class Tooth:
             for p in self.pattern.periodic
         ]
         division += [
-            Push(s.cause, 0.0, self.factor * gain.scatter * self._arc(s.bound, s.along))
-            for s in self.pattern.scatter
-            if s.along != "radial"
+            Push(s.cause, 0.0, self.factor * gain.scatter * self._arc(s.bound, s.along)) for s in self.pattern.scatter
         ]
         division += [Push(c, 0.0, self.factor * gain.drift * c.bound) for c in self.pattern.drift]
         return merged(vector_pushes(self._worse(), self.factor * gain.offset)[1], [p for p in division if p.up > 0.0])
 
     def _arc(self, bound: float, along: str) -> float:
-        return bound * self.pattern.radius if along == "angle" else bound
+        """What a scatter of one place does to its arc; a gap cut deeper by r moves each flank by r tan(alpha)."""
+        return bound * {"angle": self.pattern.radius, "tangential": 1.0, "radial": self._deeper()}[along]
+
+    def _deeper(self) -> float:
+        return math.tan(self.pattern.pressure_angle or 0.0) if self.flank else 0.0
 
     def undetermined(self) -> tuple[str, ...]:
         mine = [
@@ -258,15 +261,16 @@ class Tooth:
             if p.cause.law == "undetermined" and teeth.folded(p.harmonic, self.pattern.count)
         ]
         mine += [
-            s.cause.missing
-            for s in self.pattern.scatter
-            if s.cause.law == "undetermined" and s.along != "radial" and self.pattern.count > 1
+            s.cause.missing for s in self.pattern.scatter if s.cause.law == "undetermined" and self.pattern.count > 1
         ]
         return tuple(dict.fromkeys((*self.offset.undetermined(), *self.oblique.undetermined(), *mine)))
 
     def sample(self, draws: Draws) -> Reals:
         ranges, steps = self._ranges_and_steps(draws)
         return np.asarray((steps if self.stepwise else ranges) * self.factor)
+
+    def _has_radial(self) -> bool:
+        return any(s.along == "radial" for s in self.pattern.scatter)
 
     def _ranges_and_steps(self, draws: Draws) -> tuple[Reals, Reals]:
         """Range and largest step of the worse flank for all trials [mm]; figures of one ring share them."""
@@ -277,17 +281,48 @@ class Tooth:
         if found is not None:
             return found
         vectors, arcs = [draws.account(w) * -1j for w in waves], draws.arcs(self.pattern)
+        deep = draws.radials(self.pattern) * np.float32(self._deeper()) if self._has_radial() else None
         places = teeth.angles(self.pattern)
         ranges, steps = np.zeros(draws.trials, np.float32), np.zeros(draws.trials, np.float32)
         block = max(1, teeth.BLOCK // self.pattern.count)
         for start in range(0, draws.trials, block):
             now = slice(start, start + block)
-            for vector in vectors:
+            for side, vector in zip(self._sides(), vectors, strict=True):
                 flank = teeth.waves(vector[now], places) + arcs[now]
+                if deep is not None:
+                    flank += np.float32(side) * deep[now]
                 ranges[now] = np.maximum(ranges[now], teeth.ranges(flank))
                 steps[now] = np.maximum(steps[now], teeth.largest_steps(flank))
         draws.memo[key] = ranges, steps
         return ranges, steps
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class ToothRunOut:
+    """Run-out of gaps or holes that also scatter outwards: factor (max - min over j of e cos(phi - theta_j) + r_j).
+
+    factor  1 for the full movement of a ball in the gaps, 2 tan(alpha) for the swing of the backlash
+    Source: geometry, derived here.
+    """
+
+    offset: Account
+    pattern: Pattern
+    factor: float
+    signed: bool = False
+
+    def base(self) -> float:
+        return vector_pushes(self.offset, 2.0 * self.factor)[0]
+
+    def pushes(self) -> list[Push]:
+        own = [Push(s.cause, 0.0, 2.0 * self.factor * s.bound) for s in self.pattern.scatter if s.along == "radial"]
+        return merged(vector_pushes(self.offset, 2.0 * self.factor)[1], own)
+
+    def undetermined(self) -> tuple[str, ...]:
+        return self.offset.undetermined()
+
+    def sample(self, draws: Draws) -> Reals:
+        places = teeth.waves(draws.account(self.offset), teeth.angles(self.pattern)) + draws.radials(self.pattern)
+        return np.asarray(teeth.ranges(places) * self.factor)
 
 
 @dataclass(frozen=True, slots=True, eq=False)

@@ -58,7 +58,7 @@ class Pattern:
     drift: tuple[Cause, ...] = ()
     radial: Account = field(default_factory=Account)
 
-    def angle(self, number: int) -> float:
+    def angle(self, number: float) -> float:
         """Direction of place `number` (1 = first cut) in the part frame [rad]."""
         return self.start + self.turn * cmath.tau * (number - 1) / self.count if self.count else self.start
 
@@ -243,6 +243,13 @@ class Seat:
     shift: float
     turned: float | None
 
+    def turn(self, vector: Account, unknown: Cause) -> Account:
+        """A vector of the inner part in the outer's frame; `unknown` stands for a mounting angle nobody recorded."""
+        if self.turned is None:
+            seen = vector if self.sense > 0 else vector.mirrored()
+            return seen.turned_by_an_unknown_angle(unknown)
+        return part_vector(vector, sg=self.sense, inserted_at=-self.sense * self.turned)
+
 
 def joined(
     state: State, seat: Seat, *, offset: Account, lean: Account, axial: Account, clock: Account, unknown: Cause
@@ -255,10 +262,7 @@ def joined(
     """
 
     def turn(vector: Account) -> Account:
-        if seat.turned is None:
-            seen = vector if seat.sense > 0 else vector.mirrored()
-            return seen.turned_by_an_unknown_angle(unknown)
-        return part_vector(vector, sg=seat.sense, inserted_at=-seat.sense * seat.turned)
+        return seat.turn(vector, unknown)
 
     ends = sorted((seat.sense * state.low + seat.shift, seat.sense * state.high + seat.shift))
     z = (ends[0] + ends[1]) / 2.0
@@ -286,9 +290,7 @@ def joined_placing(
     """The machine that holds the inner part, in the frame of the outer one: the same change of frame as `joined`."""
 
     def turn(vector: Account) -> Account:
-        if seat.turned is None:
-            return vector.turned_by_an_unknown_angle(unknown)
-        return part_vector(vector, sg=seat.sense, inserted_at=-seat.sense * seat.turned)
+        return seat.turn(vector, unknown)
 
     at_zero = placing.axis_at(-seat.sense * seat.shift)  # the inner frame's height of the outer frame's zero
     return Placing(

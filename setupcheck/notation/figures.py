@@ -40,10 +40,11 @@ class Figure:
         return self.ratio[0] / self.ratio[1]
 
 
-def figure(given: Given, kind: Kind, *, text: str | None = None) -> Figure:
+def figure(given: Given, kind: Kind, *, text: str | None = None, units: str = "mm") -> Figure:
     """Number and unit of one entry.
 
     text: what to read instead of `given` itself (a part of it, or it without its ± sign); messages quote `given`.
+    units: of the file, for what a message offers to write; they give no unit to a number without one.
     The unit, when there is one, belongs to `kind`. Raises NotationError.
     """
     text = tidy(text if text is not None else text_of(given, kind))
@@ -55,7 +56,7 @@ def figure(given: Given, kind: Kind, *, text: str | None = None) -> Figure:
         )
     in_parts = _INCH_FRACTION.fullmatch(text)
     if in_parts and kind.name in ("length", "number"):
-        return _inch_fraction(in_parts, given, kind)
+        return _inch_fraction(in_parts, given, kind, units)
     if re.search(r"\.[0-9]*\.", text):
         raise NotationError(f"{quoted(given)} has two points", f"Write one point for the decimal, as in {kind.example}")
     found = _NUMBER.match(text)
@@ -220,7 +221,7 @@ def number_as_written(read: Figure) -> str:
     return plain(read.number)
 
 
-def _inch_fraction(found: re.Match[str], given: object, kind: Kind) -> Figure:
+def _inch_fraction(found: re.Match[str], given: object, kind: Kind, units: str) -> Figure:
     sign, whole, joint, upper, lower, unit = found.groups()
     up, low = int(upper), int(lower)
     written = f"{sign}{whole + ' ' if whole else ''}{upper}/{lower}"
@@ -237,7 +238,7 @@ def _inch_fraction(found: re.Match[str], given: object, kind: Kind) -> Figure:
         raise NotationError(f"{quoted(given)} is a fraction", f"Write the decimal: {decimal}")
     if unit not in _INCHES:
         wrong = "is a fraction, and not of an inch" if unit else "is a fraction without unit"
-        raise NotationError(f"{quoted(given)} {wrong}", f"Write {written} in, or the decimal {decimal} {unit or 'mm'}")
+        raise NotationError(f"{quoted(given)} {wrong}", f"Write {written} in, or the decimal {decimal} {unit or units}")
     top = int(whole or 0) * low + up
     return Figure((-top if sign == "-" else top, low), "in", given)
 

@@ -25,7 +25,7 @@ def length(given: Given, *, units: Units, unit_needed: bool = False, at_least: f
     >>> length("12 um", units="mm"), length(1.25, units="in"), length("1 1/4 in", units="mm")
     (0.012, 31.75, 31.75)
     """
-    return length_in_mm(figure(given, LENGTH), units, unit_needed=unit_needed, at_least=at_least)
+    return length_in_mm(figure(given, LENGTH, units=units), units, unit_needed=unit_needed, at_least=at_least)
 
 
 def bound(given: Given, *, units: Units = "mm", unit_needed: bool = True) -> float:
@@ -34,7 +34,7 @@ def bound(given: Given, *, units: Units = "mm", unit_needed: bool = True) -> flo
     >>> bound("\u00b10.0005 in"), bound("+-3 um")
     (0.0127, 0.003)
     """
-    read = figure(given, LENGTH, text=without_plus_minus(text_of(given, LENGTH)))
+    read = figure(given, LENGTH, text=without_plus_minus(text_of(given, LENGTH)), units=units)
     return length_in_mm(read, units, unit_needed=unit_needed, at_least=0.0)
 
 

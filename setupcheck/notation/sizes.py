@@ -82,7 +82,7 @@ def size(given: Given, *, units: Units, at_least: float | None = None) -> Size:
 
 
 def _nominal(given: Given, text: str, units: Units, at_least: float | None) -> float:
-    return length_in_mm(figure(given, SIZE, text=text), units, at_least=at_least)
+    return length_in_mm(figure(given, SIZE, text=text, units=units), units, at_least=at_least)
 
 
 def _with_fit(given: Given, found: re.Match[str], units: Units, at_least: float | None) -> Size:
@@ -116,16 +116,16 @@ def _symmetrical(given: Given, text: str, units: Units, at_least: float | None) 
         )
     if _FIT.fullmatch(deviation) or _FIT.fullmatch(nominal):
         _refuse_limits_and_class(given)
-    read = figure(given, SIZE, text=nominal)
-    half = figure(given, SIZE, text=deviation)
+    read = figure(given, SIZE, text=nominal, units=units)
+    half = figure(given, SIZE, text=deviation, units=units)
     value = length_in_mm(read, units, at_least=at_least)
     away = _deviation(given, half, half.unit, nominal=read, written=nominal, units=units)
     return Size(value, 0.0 - away, away)
 
 
 def _with_limits(given: Given, nominal: str, found: re.Match[str], units: Units, at_least: float | None) -> Size:
-    read = figure(given, SIZE, text=nominal)
-    first, second = (figure(given, SIZE, text=text) for text in found.groups())
+    read = figure(given, SIZE, text=nominal, units=units)
+    first, second = (figure(given, SIZE, text=text, units=units) for text in found.groups())
     for end, text in zip((first, second), found.groups(), strict=True):
         if end.ratio[0] and text[0] not in "+-":
             raise NotationError(

@@ -64,7 +64,7 @@ def _placed(
     shape = outline(node)
     state = unknown
     for i, relation in relations:
-        path = f"parts.{part_name}.given.{i}"
+        path = f"parts.{part_name}.given[{i + 1}]"
         root = done[_own(relation.about or relation.from_ or "")]
         state = _related(state, root, relation, path, shape, part_name, name)
     return state

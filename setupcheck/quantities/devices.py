@@ -15,6 +15,7 @@ class Device:
     jaws       number of jaws for directions given as "jaw 2"; 0 where it has none
     grips      it grips over a length and so can rule the lean by two planes
     xy         its error is stated along two machine axes
+    covers     it lies on the surface it holds, so that surface cannot be cut in the same holding
     """
 
     words: str
@@ -23,24 +24,26 @@ class Device:
     jaws: int = 0
     grips: bool = False
     xy: bool = False
+    covers: bool = False
 
 
 DEVICES: dict[str, Device] = {
-    "three-jaw": Device("in three-jaw chuck", jaws=3, grips=True),
+    "three-jaw": Device("in three-jaw chuck", jaws=3, grips=True, covers=True),
     "four-jaw": Device("in four-jaw chuck", jaws=4, grips=True),
-    "soft-jaws": Device("in soft jaws", jaws=3, grips=True),
-    "shimmed-jaws": Device("in jaws over shims", jaws=3, grips=True),
-    "collet": Device("in collet", grips=True),
-    "pot-chuck": Device("in pot chuck", grips=True),
-    "spigot": Device("in spigot", clearance=True),
-    "plain-mandrel": Device("on plain mandrel", clearance=True, grips=True),
-    "taper-mandrel": Device("on taper mandrel", grips=True),
-    "expanding-mandrel": Device("on expanding mandrel", grips=True),
+    "soft-jaws": Device("in soft jaws", jaws=3, grips=True, covers=True),
+    "shimmed-jaws": Device("in jaws over shims", jaws=3, grips=True, covers=True),
+    "collet": Device("in collet", grips=True, covers=True),
+    "pot-chuck": Device("in pot chuck", grips=True, covers=True),
+    "spigot": Device("in spigot", clearance=True, covers=True),
+    "plain-mandrel": Device("on plain mandrel", clearance=True, grips=True, covers=True),
+    "taper-mandrel": Device("on taper mandrel", grips=True, covers=True),
+    "expanding-mandrel": Device("on expanding mandrel", grips=True, covers=True),
     "centres": Device("between centres"),
     "faceplate": Device("on faceplate"),
     "fixture": Device("in fixture"),
     "vee-block": Device("in vee-block"),
     "magnetic-chuck": Device("on magnetic chuck"),
+    "steady": Device("in steady", covers=True),
     "indicator": Device("trued by indicator"),
     "edge-finder": Device("found by edge finder", xy=True),
     "spindle": Device("in its own bearings"),

@@ -7,7 +7,7 @@ from dataclasses import dataclass
 from setupcheck.jobfile.names import Ref
 from setupcheck.jobfile.setups import Setup
 from setupcheck.quantities.book import Scope
-from setupcheck.quantities.requirements import Stack
+from setupcheck.quantities.requirements import Stack, spoken
 from setupcheck.quantities.route import machine_of
 from setupcheck.quantities.scopes import CutEntry, HoldEntry
 from setupcheck.quantities.shop import Floor
@@ -102,7 +102,7 @@ def _called(scope: Scope, field: str) -> str | None:
     """How an instance is called in messages, and the surface it is about."""
     node = scope.node
     if isinstance(node, Stack):
-        return node.require.name or f"{node.require.what} at {_spoken(node)}" if field == "name" else node.of
+        return node.require.name or f"{node.require.what} at {spoken(node)}" if field == "name" else node.of
     if isinstance(node, HoldEntry):
         return (
             node.entry.on if field == "surface" else f"op {scope.op}, {node.step.replace('_', ' ')} on {node.entry.on}"
@@ -110,12 +110,6 @@ def _called(scope: Scope, field: str) -> str | None:
     if isinstance(node, CutEntry):
         return node.name
     return None
-
-
-def _spoken(stack: Stack) -> str:
-    of = stack.of.rpartition(".")[2] or stack.of
-    about = stack.about.rpartition(".")[2]
-    return f"{of} about {about}" if about and stack.require.what not in ("allowance", "chord", "pitch-circle") else of
 
 
 def _ref(floor: Floor, scope: Scope, setup: Setup | None) -> Ref | None:

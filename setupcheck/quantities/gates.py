@@ -22,7 +22,8 @@ FINE, COARSE, FINE_BELOW = 0.0001, 0.001, 0.010
 class Gate:
     """The largest dial reading a hold may show so that every requirement is still met at its worst.
 
-    reading   full indicator movement [mm], 0 where no reading will do; None where no requirement depends on it
+    reading   full indicator movement [mm], exact (the report rounds it down); 0 where no reading will do, None where no
+              requirement depends on it
     planned   what the job file plans, or has measured (`measured`) [mm];  by  instance of the stack that sets it
     also      other operations held by the same device with its mark kept: one reading for all
     least     the reading must not be below this: a known high spot takes away from another
@@ -128,13 +129,13 @@ def _gate(
     for key, result in results:
         for cause in _causes(result.figure, path, kept):
             directed = directed or bool(cause.mean)
-            low, high = _span(result, cause, planned, guard_of(given))
+            low, high = span(result, cause, planned, guard_of(given))
             lowest = max(lowest, low)
             if high < highest:
                 highest, by = high, key
     assert scope.op is not None
-    reading = None if highest == math.inf else rounded_down(highest)
-    least = math.ceil(lowest / FINE - 1e-6) * FINE
+    reading = None if highest == math.inf else highest
+    least = lowest
     return Gate(
         scope.key,
         scope.op,
@@ -155,7 +156,7 @@ def _causes(figure: Figure, path: str, kept: str) -> list[Cause]:
     return [c for c in causes if path in c.paths or (kept and c.key.startswith(kept))]
 
 
-def _span(result: Result, cause: Cause, planned: float, guard: float) -> tuple[float, float]:
+def span(result: Result, cause: Cause, planned: float, guard: float) -> tuple[float, float]:
     """(least, largest) dial reading at which one requirement is met; (0, 0) where none will do."""
     low, high = result.stack.low, result.stack.high
     if not cause.mean:

@@ -64,6 +64,8 @@ class Held:
         cut_here = ref.op is None and any(self.ref(name) == ref for name in self.setup.cut)
         if state is None:
             found = Datum("same-holding" if cut_here else "not-yet-made", None)
+        elif cut_here and self._lies_on(step):
+            found = Datum("same-holding", state.op)
         elif gone := self._gone(state, at):
             found = Datum("cut-away", gone)
         else:
@@ -72,6 +74,11 @@ class Held:
             )
         self.floor.datums[f"{self.op}/{step}"] = found
         return state
+
+    def _lies_on(self, step: str) -> bool:
+        """True where the device covers the surface it holds, so that nothing can be cut there."""
+        entry = getattr(self.setup.hold, step, None) if self.setup.hold is not None else None
+        return isinstance(entry, Centre) and DEVICES[entry.by].covers
 
     def _is_stock(self, ref: Ref) -> bool:
         return self.floor.loaded.job.parts[ref.part].surfaces[ref.surface].made == "stock"
@@ -113,7 +120,7 @@ def direction(held: Held, given: Deviation | None, path: str, device: Device) ->
             return Towards(why="no-mark")
         return Towards(math.tau * (int(named[2]) - 1) / device.jaws, of_machine=True, why="known")
     if named:
-        return Towards(_place_angle(held, "holes" if named[1] == "hole" else "teeth", int(named[2]), path), why="known")
+        return Towards(_place_angle(held, named[1], int(named[2]), path), why="known")
     try:
         return held.of_part(angle(text))
     except NotationError:
@@ -128,19 +135,32 @@ def direction(held: Held, given: Deviation | None, path: str, device: Device) ->
     )
 
 
-def _place_angle(held: Held, kind: str, number: int, path: str) -> float:
-    """Direction of tooth or hole `number` [rad]; an error in the file while it is not cut."""
-    for states in held.body.states.values():
-        state = states[-1]
-        if state.kind == kind and state.pattern is not None and (state.op is not None or state.part != held.part):
+def _place_angle(held: Held, thing: str, number: int, path: str) -> float:
+    """Direction of tooth, gap or hole `number` [rad]; an error in the file while it is not cut, or where two rings have it.
+
+    Gap n is the n-th cut; tooth n stands between gap n and the next one, half a pitch further.
+    """
+    kind = "holes" if thing == "hole" else "teeth"
+    cut = [
+        states[-1]
+        for states in held.body.states.values()
+        if states[-1].kind == kind and (states[-1].op is not None or states[-1].part != held.part)
+    ]
+    if len(cut) > 1:
+        raise held.floor.problem(
+            f"{path}.high_at",
+            f"{' and '.join(s.ref for s in cut)} both have a {thing} {number}",
+            "Write an angle from the part's mark, as in high_at: 90 deg",
+        )
+    for state in cut:
+        if state.pattern is not None:
             if not 1 <= number <= state.pattern.count:
                 raise held.floor.problem(
                     f"{path}.high_at",
                     f"{state.name} has {state.pattern.count} places, not {number}",
                     f"Write a number from 1 to {state.pattern.count}",
                 )
-            return state.pattern.angle(number)
-    thing = "hole" if kind == "holes" else "tooth"
+            return state.pattern.angle(number + 0.5 if thing == "tooth" else number)
     raise held.floor.problem(
         f"{path}.high_at",
         f"{thing} {number} is not cut yet when operation {held.op} is set up",
@@ -187,7 +207,7 @@ def centring(held: Held, centre: Centre, step: str, state: State, *, pair: str) 
         entry = Entry(
             f"op {held.op}, {centre.on} through {below.by}: run-out{plane}",
             held.op,
-            f"{path}.through.{i}.runout",
+            f"{path}.through[{i + 1}].runout",
             below.by,
         )
         total += run_out(below.runout, entry, inside=False, towards=Towards(), turned=held.turned(centre))
@@ -220,7 +240,10 @@ def _axis(held: Held, hold: Hold) -> tuple[Account, Account]:
     )
     if hold.centre is None:
         held.floor.tilt_datums[op] = int(hold.square is not None)
-        return nothing
+        flat = held.datum(hold.square.on, "square", None) if hold.square is not None else None
+        if hold.square is None or flat is None:
+            return nothing
+        return nothing[0], flat.lean - seating(held, hold.square, flat)  # squared, but nothing says where its axis is
     state = held.datum(hold.centre.on, "centre", hold.centre.at)
     second = held.datum(hold.and_centre.on, "and_centre", hold.and_centre.at) if hold.and_centre is not None else None
     face = held.datum(hold.square.on, "square", None) if hold.square is not None else None
@@ -315,11 +338,10 @@ def _stop(held: Held, stop: Stop | None, lean: Account) -> Account:
             Cause(f"op {op}: where the part is stopped", "undetermined", op, missing=held.path("stop.on"))
         ).along(1)
     error = length_error(stop.error, Entry(f"op {op}, stop on {stop.on}", op, f"{held.path('stop')}.error", "stop"))
+    away = -float(face.facing * held.sg)  # a spacer carries the part away from the stop, towards the tool or from it
     for i, spacer in enumerate(stop.spacers):
-        error += size_error(
-            spacer.length,
-            Entry(f"op {op}, {spacer.name} at the stop", op, f"{held.path('stop')}.spacers.{i}.length", ""),
-        )[1]
+        entry = Entry(f"op {op}, {spacer.name} at the stop", op, f"{held.path('stop')}.spacers[{i + 1}].length", "")
+        error += size_error(spacer.length, entry)[1] * away
     return contact(held, stop, face, lean, held.path("stop")) - error * float(held.sg)
 
 

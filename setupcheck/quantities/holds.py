@@ -24,15 +24,24 @@ def tilt_datums(floor: Floor, setup: Setup) -> float | None:
 
 
 def error_stated(entry: HoldEntry, key: str) -> str | Open:
-    """measured, stated or typical; Open with the path where nothing is said. Source: the job file."""
+    """measured, stated or typical; Open with the path where nothing is said, or where no typical value is known.
+
+    Source: the job file.
+    """
     given = entry.error
+    path = f"{key}.{entry.key}"
     if given is None:
         if entry.step in ("centre", "and_centre") and getattr(entry.entry, "x", None) is not None:
             return "stated"
-        return Open((f"{key}.{entry.key}",))
+        return Open((path,))
     if given.measured is not None:
         return "measured"
-    return "stated" if given.at_most is not None else "typical"
+    if given.at_most is not None:
+        return "stated"
+    device = given.device or str(getattr(entry.entry, "by", ""))
+    if typical(device, entry.key) is None:
+        return Open((f"{path}.at_most",), f"no typical value is known for {device}")
+    return "typical"
 
 
 def direction_known(floor: Floor, key: str, entry: HoldEntry) -> str | None:
@@ -65,20 +74,19 @@ def measured_u(entry: HoldEntry, path: str) -> float | Open | None:
 
 
 def clearance_share(entry: HoldEntry, path: str, results: tuple[Result, ...]) -> float | None:
-    """Largest share a clearance of this hold has in the tightest stack it enters.
+    """Largest part of a requirement's limit that a clearance of this hold takes by itself.
 
-    The tightest is the stack with the least margin over its limit.  Source: derived from the ledger.
+    push of the clearance / limit (half the span between two limits).  Source: derived from the ledger.
     """
     if getattr(entry.entry, "clearance", None) is None:
         return None
     mine = f"{path}.clearance"
-    best: tuple[float, float] | None = None
-    for result in results:
-        share = sum(s.share for s in result.combined.shares if mine in s.cause.paths)
-        margin = result.margin_share
-        if share > 0.0 and margin is not None and (best is None or margin < best[0]):
-            best = (margin, share)
-    return best[1] if best is not None else None
+    shares = [
+        sum(s.worst for s in result.combined.shares if mine in s.cause.paths) / result.scale
+        for result in results
+        if result.scale
+    ]
+    return max(shares, default=None)
 
 
 def reach(floor: Floor, key: str) -> float | None:

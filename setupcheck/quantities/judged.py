@@ -33,16 +33,17 @@ class Result:
         return min(ends, default=None)
 
     @property
+    def scale(self) -> float:
+        """What a margin is compared with: the limit, or half the span between two limits; 0 without one [base unit]."""
+        s = self.stack
+        if s.low is not None and s.high is not None:
+            return (s.high - s.low) / 2.0
+        return abs(s.high if s.high is not None else s.low or 0.0)
+
+    @property
     def margin_share(self) -> float | None:
         """Margin over the limit; over half the span where there are two limits."""
-        s, margin = self.stack, self.margin
-        if margin is None:
-            return None
-        if s.low is not None and s.high is not None:
-            scale = (s.high - s.low) / 2.0
-        else:
-            scale = abs(s.high if s.high is not None else s.low or 0.0)
-        return margin / scale if scale > 0.0 else None
+        return self.margin / self.scale if self.margin is not None and self.scale > 0.0 else None
 
 
 def floor(floor: Floor) -> Floor:

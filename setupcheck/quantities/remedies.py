@@ -12,7 +12,7 @@ from setupcheck.jobfile.reading import LoadedJob
 from setupcheck.jobfile.setups import Setup
 from setupcheck.ledger.causes import Cause
 from setupcheck.quantities.book import Open
-from setupcheck.quantities.gates import FINE, guard_of, reading_for, room, rounded_down
+from setupcheck.quantities.gates import FINE, guard_of, reading_for, room, rounded_down, span
 from setupcheck.quantities.judged import Result
 from setupcheck.quantities.requirements import read_stack
 from setupcheck.quantities.route import walk
@@ -132,8 +132,13 @@ def _cut_back(loaded: LoadedJob, result: Result, *, most: int) -> tuple[Change, 
     changes: list[Change] = []
     for share in result.combined.shares:
         cause, path = share.cause, share.cause.paths[0] if share.cause.paths else ""
-        found = stated(loaded, path) if path and cause.op is not None and not cause.mean else None
+        found = stated(loaded, path) if path and cause.op is not None else None
         if found is None or share.worst <= 0.0:
+            continue
+        if cause.mean:  # a known high spot: only by itself, and along the way it points
+            least, largest = span(result, cause, found.now, found.guard)
+            if not changes and least == 0.0 and 0.0 < (needed := _down(largest, found.unit)) < found.now:
+                return (Change(cause, path, found.now, needed, found.unit),)
             continue
         keep = 1.0 - over / share.worst
         if keep <= LEAST_KEPT:  # this one alone will not do: cut it back as far as care goes, and look at the next

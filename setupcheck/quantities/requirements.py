@@ -34,7 +34,7 @@ def read_stack(floor: Floor, index: int) -> Stack:
 
     Raises: JobError where a grade cannot give the limit.
     """
-    require, path = floor.loaded.job.require[index], f"require.{index}"
+    require, path = floor.loaded.job.require[index], f"require[{index + 1}]"
     kind = limit_kind(require)  # the reader has seen to it that the limits are of this kind
     if require.between is not None:
         low: float | None = require.between[0].value
@@ -61,6 +61,20 @@ def read_stack(floor: Floor, index: int) -> Stack:
 
 def _short(text: str) -> str:
     return text.replace(".", "-")
+
+
+def spoken(stack: Stack) -> str:
+    """The surfaces of a requirement in words: `teeth about bearings`, with their parts where both have one name."""
+    of, about = _surface(stack.of), _surface(stack.about)
+    if of == about:
+        of, about = _surface(stack.of, whole=True), _surface(stack.about, whole=True)
+    alone = not about or stack.require.what in ("allowance", "chord", "pitch-circle", "torque")
+    return of if alone else f"{of} about {about}"
+
+
+def _surface(text: str, *, whole: bool = False) -> str:
+    name, _, op = text.partition("@")
+    return (name if whole else name.rpartition(".")[2]) + (f" after op {op}" if op else "")
 
 
 def _grade(floor: Floor, require: Require, path: str) -> float:

@@ -177,6 +177,9 @@ def _dial(setup: Setup, cut: Cut, name: str, teeth: bool) -> Account:
     if teeth and given is None and setup.head is not None and setup.head.mid_plane is not None:
         given, path = setup.head.mid_plane.error, f"setups.{op}.head.mid_plane.error"
         words = f"op {op}, {name}: mid-plane found {setup.head.mid_plane.found.replace('-', ' ')}"
+        if setup.head.mid_plane.found == "before-tilt":
+            # tilting about a pivot carries the mid-plane away; what is left of it is not computed yet
+            return Account.of(Cause(words, "undetermined", op, missing=f"setups.{op}.head.mid_plane.found"))
     return length_error(given, Entry(words, op, path, "dial"))
 
 
@@ -338,7 +341,7 @@ def _contact_faces(
     middle, error = 0.0, Account()
     for i, spacer in enumerate(join.stop.spacers):
         length, one = size_error(
-            spacer.length, Entry(f"op {setup.op}, {spacer.name}", setup.op, f"{path}.spacers.{i}.length", "")
+            spacer.length, Entry(f"op {setup.op}, {spacer.name}", setup.op, f"{path}.spacers[{i + 1}].length", "")
         )
         middle, error = middle + length, error + one
     if join.stop.error is not None:

@@ -50,7 +50,9 @@ def scopes(floor: Floor) -> list[Scope]:
         stack = read_stack(floor, i)
         seen[stack.name] = seen.get(stack.name, 0) + 1
         key = stack.name if seen[stack.name] == 1 else f"{stack.name}-{seen[stack.name]}"
-        found.append(Scope("stack", key, stack, f"require.{i}", line=loaded.line(f"require.{i}"), within=(whole,)))
+        found.append(
+            Scope("stack", key, stack, f"require[{i + 1}]", line=loaded.line(f"require[{i + 1}]"), within=(whole,))
+        )
     return found
 
 

@@ -112,7 +112,7 @@ def outline(surface: Surface) -> Outline:
         return Outline(surface.kind, surface.at, surface.at, surface.diameter, surface.facing)
     if isinstance(surface, Throat):
         return Outline("throat", surface.at, surface.at, surface.diameter, 0)
-    half = (surface.width or 0.0) / 2.0
+    half = (surface.width or 0.0) / 2.0 if isinstance(surface, Toothing) else 0.0  # a slot's width lies round the part
     return Outline(surface.kind, surface.at - half, surface.at + half, surface.on_circle, 0)
 
 

@@ -46,7 +46,7 @@ def build(floor: Floor, stack: Stack) -> Built | Open:
 
 
 def _state(floor: Floor, stack: Stack, text: str, key: str) -> State | Open:
-    path = f"require.{stack.index}.{key}"
+    path = f"require[{stack.index + 1}].{key}"
     if not text:
         return Open((path,))
     ref = floor.loaded.ref(text)
@@ -72,7 +72,7 @@ def _pair(floor: Floor, stack: Stack) -> tuple[State, State] | Open:
     assert isinstance(of, State) and isinstance(about, State)
     if floor.body(of.part) is not floor.body(about.part):
         raise floor.problem(
-            f"require.{stack.index}",
+            f"require[{stack.index + 1}]",
             f"{of.ref} and {about.ref} are never joined in this route",
             "Write the joining as a setup of its own",
         )
@@ -98,10 +98,20 @@ def _vector(floor: Floor, stack: Stack) -> Built | Open:
         else ((g.low, g.high) if g.pattern is None and g.high > g.low else (g.z,))
     )
     accounts = tuple(g.axis_at(z) - r.axis_at(z) for z in heights)
+    if _scatters_outwards(g):
+        assert g.pattern is not None
+        return Built(
+            figures.ToothRunOut(accounts[0], g.pattern, 1.0), _second_order(lean=g.lean - r.lean, lever=abs(g.z - r.z))
+        )
     lever = max(abs(z - r.z) for z in heights)
     return Built(
         figures.Vector(accounts, 2.0), _second_order(lean=g.lean - r.lean, lever=max(lever, g.diameter or 0.0))
     )
+
+
+def _scatters_outwards(state: State) -> bool:
+    """True for gaps or holes with a radial scatter of their own."""
+    return state.pattern is not None and any(s.along == "radial" for s in state.pattern.scatter)
 
 
 def _lean(floor: Floor, stack: Stack) -> Built | Open:
@@ -114,7 +124,7 @@ def _lean(floor: Floor, stack: Stack) -> Built | Open:
     if across is None and stack.require.what == "face-run-out":
         across = g.diameter
         if across is None:
-            return Open((f"require.{stack.index}.across",))
+            return Open((f"require[{stack.index + 1}].across",))
     account = g.lean - r.lean
     return Built(figures.Vector((account,), across or 1.0), _second_order(lean=account, lever=across or 0.0))
 
@@ -128,7 +138,7 @@ def _teeth(floor: Floor, stack: Stack) -> Built | Open:
     what, pattern = stack.require.what, g.pattern
     if pattern is None:
         raise floor.problem(
-            f"require.{stack.index}.of", f"{g.ref} has no teeth or holes", "Write the name of a toothing"
+            f"require[{stack.index + 1}].of", f"{g.ref} has no teeth or holes", "Write the name of a toothing"
         )
     flank = what not in ("gap-centre-pitch",) and g.kind == "teeth"
     if flank and pattern.pressure_angle is None:
@@ -136,7 +146,7 @@ def _teeth(floor: Floor, stack: Stack) -> Built | Open:
     factor = {"index-range": 1.0 / pattern.radius, "index-within": 0.5 / pattern.radius}.get(what, 1.0)
     if what == "on-workpiece":
         if stack.require.on_diameter is None:
-            return Open((f"require.{stack.index}.on_diameter",))
+            return Open((f"require[{stack.index + 1}].on_diameter",))
         factor = stack.require.on_diameter / (2.0 * pattern.radius)
     oblique = _oblique(floor, g, r)
     if isinstance(oblique, Open):
@@ -161,7 +171,7 @@ def _oblique(floor: Floor, g: State, r: State) -> Account | Open:
     wheel = floor.loaded.ref(mesh.wheel)
     if (wheel.part, wheel.surface) != (g.part, g.name):
         return Account()
-    missing = tuple(f"worm.{k}" for k in ("axial_module", "reference_diameter") if getattr(worm, k) is None)
+    missing = tuple(f"worm.{k}" for k in ("hand", "axial_module", "reference_diameter") if getattr(worm, k) is None)
     if missing:
         return Open(missing)
     assert worm.axial_module is not None and worm.reference_diameter is not None
@@ -178,10 +188,11 @@ def _backlash_swing(floor: Floor, stack: Stack) -> Built | Open:
     if g.pattern is None or g.pattern.pressure_angle is None:
         return Open((f"parts.{g.part}.surfaces.{g.name}.pressure_angle",))
     offset = g.offset - r.axis_at(g.z)
-    return Built(
-        figures.Vector((offset,), 4.0 * math.tan(g.pattern.pressure_angle)),
-        _second_order(lean=g.lean - r.lean, lever=abs(g.z - r.z)),
-    )
+    swing = 2.0 * math.tan(g.pattern.pressure_angle)
+    figure: Figure = figures.Vector((offset,), 2.0 * swing)
+    if _scatters_outwards(g):
+        figure = figures.ToothRunOut(offset, g.pattern, swing)
+    return Built(figure, _second_order(lean=g.lean - r.lean, lever=abs(g.z - r.z)))
 
 
 def _holes(floor: Floor, stack: Stack) -> Built | Open:
@@ -193,7 +204,7 @@ def _holes(floor: Floor, stack: Stack) -> Built | Open:
     pattern = g.pattern
     if pattern is None or g.kind == "teeth":
         raise floor.problem(
-            f"require.{stack.index}.of", f"{g.ref} is no pattern of holes", "Write the name of a hole pattern"
+            f"require[{stack.index + 1}].of", f"{g.ref} is no pattern of holes", "Write the name of a hole pattern"
         )
     if what == "chord":
         return Built(holes.HoleChord(pattern), 0.0)
@@ -210,7 +221,9 @@ def _holes(floor: Floor, stack: Stack) -> Built | Open:
             return key
         if key.pattern is None:
             raise floor.problem(
-                f"require.{stack.index}.clock", f"{key.ref} gives no angle", "Write a slot, hole pattern or toothing"
+                f"require[{stack.index + 1}].clock",
+                f"{key.ref} gives no angle",
+                "Write a slot, hole pattern or toothing",
             )
         turn = g.clock - _angle_about(key, r)
     return Built(
@@ -235,7 +248,7 @@ def _mid_plane(floor: Floor, stack: Stack) -> Built | Open:
         return pair
     g, r = pair
     if g.pattern is None:
-        raise floor.problem(f"require.{stack.index}.of", f"{g.ref} has no teeth", "Write the name of a toothing")
+        raise floor.problem(f"require[{stack.index + 1}].of", f"{g.ref} has no teeth", "Write the name of a toothing")
     face = _state(floor, stack, place.worm_axis.from_, "of")
     if isinstance(face, Open):
         return Open(("place.worm_axis.from",), face.because)
@@ -276,7 +289,7 @@ def _length(floor: Floor, stack: Stack) -> Built | Open:
 def _allowance(floor: Floor, stack: Stack) -> Built | Open:
     """Radial stock left where the cut is thinnest."""
     if not stack.of:
-        return Open((f"require.{stack.index}.of",))
+        return Open((f"require[{stack.index + 1}].of",))
     ref = floor.loaded.ref(stack.of)
     ops = [
         int(key.partition("/")[0])
@@ -285,7 +298,7 @@ def _allowance(floor: Floor, stack: Stack) -> Built | Open:
     ]
     if not ops:
         return Open(
-            (f"require.{stack.index}.of",), f"{ref} is cut out of nothing that is known: no earlier state of it"
+            (f"require[{stack.index + 1}].of",), f"{ref} is cut out of nothing that is known: no earlier state of it"
         )
     key = next(
         k

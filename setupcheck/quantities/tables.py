@@ -161,7 +161,7 @@ HOLD = (
         0,
         holds.clearance_share,
         {"entry": ":", "path": "@path", "results": "known stack.combined"},
-        "share of the clearance in the tightest stack it enters",
+        "part of a requirement's limit that the clearance takes by itself",
     ),
     Quantity(
         "hold.reach",

@@ -11,6 +11,7 @@ from setupcheck.quantities.book import INCH, Known, Scope
 from setupcheck.quantities.judged import Result
 from setupcheck.quantities.scopes import stack_of
 from setupcheck.report.remedies import remedy_in_words
+from setupcheck.report.uncomputed import uncomputed
 from setupcheck.report.wording import clean
 from setupcheck.rulebook import Finding
 
@@ -59,6 +60,10 @@ def as_data(found: Review) -> dict[str, object]:
                 "planned": _shown(g.planned, "um"),
                 "unit": "um",
                 "by": g.by,
+                "measured": g.measured,
+                "also": list(g.also),
+                "least": _shown(g.least, "um") if g.least else None,
+                "high_at": clean(g.high_at) or None,
             }
             for g in found.gates
         ],
@@ -73,6 +78,10 @@ def as_data(found: Review) -> dict[str, object]:
                 "source": c.source,
             }
             for c in found.evaluation.cautions
+        ],
+        "not_computed": [
+            {"at": one.at, "line": one.line, "what": clean(f"{one.owner}: {one.what}")}
+            for one in uncomputed(found.loaded)
         ],
     }
 

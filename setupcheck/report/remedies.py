@@ -5,7 +5,8 @@ from __future__ import annotations
 from setupcheck.flow import Review
 from setupcheck.notation import show
 from setupcheck.quantities.remedies import Remedy
-from setupcheck.report.wording import cause_in_words, finer, in_unit
+from setupcheck.report.causes import cause_in_parts
+from setupcheck.report.wording import finer, on_the_dial
 from setupcheck.rulebook import Finding
 
 STACK_RULES = ("STACK-001", "STACK-002")
@@ -25,16 +26,16 @@ def _worked_out(remedy: Remedy, *, inches: bool) -> str:
     """The smallest change in words; empty where nothing simple does it."""
     if remedy.swap is not None:
         swap = remedy.swap
-        unit, digits = ("thou", 1) if inches else ("um", 0)
         return (
             f"Hold op {swap.op} on {swap.on} instead of {swap.was}, as op {swap.like} does, so that what lies between the two "
-            f"drops out, and true it to {show(swap.reading, unit, digits)} ({swap.path})."
+            f"drops out, and true it to {on_the_dial(swap.reading, inches=inches)} ({swap.path})."
         )
     told = []
     for change in remedy.changes:
         unit, digits = finer(change.unit, inches=inches)
+        where, what = cause_in_parts(change.cause.key)
         told.append(
-            f"bring the {cause_in_words(change.cause.key)} from {in_unit(change.now, unit, digits)} down to "
+            f"{where + ': ' if where else ''}bring the {what} from {show(change.now, unit, digits)} down to "
             f"{show(change.needed, unit, digits)} ({change.path})"
         )
     text = "; and ".join(told)

@@ -10,14 +10,17 @@ from setupcheck.notation import show
 from setupcheck.quantities.book import Open, Scope
 from setupcheck.quantities.gates import Gate
 from setupcheck.quantities.judged import Result
-from setupcheck.quantities.scopes import stack_of
+from setupcheck.report.causes import cause_in_words
 from setupcheck.report.remedies import remedy_in_words
-from setupcheck.report.wording import cause_in_words, clean, finer, in_unit, unit_of, wrap
+from setupcheck.report.uncomputed import in_lines, uncomputed
+from setupcheck.report.wording import as_stated, clean, finer, in_unit, on_the_dial, title_of, unit_of, wrap
 from setupcheck.rulebook import VERDICTS, CautionLine, Finding
 
 CAUTIONS_SHOWN = 5
 """Cautions of one operation shown without --all. Source: our screening choice."""
 CAUSES_SHOWN = 3
+NOT_CRITICAL = 10.0
+"""A dial may show so many times its plan: no number is worth printing. Source: our screening choice."""
 
 
 def as_text(found: Review, *, everything: bool = False) -> str:
@@ -31,6 +34,7 @@ def as_text(found: Review, *, everything: bool = False) -> str:
         _stops(found),
         _findings(found, everything),
         _requirements(found, everything),
+        _uncomputed(found),
         _gates(found),
         _cautions(found, everything),
     ):
@@ -51,7 +55,8 @@ def _head(found: Review) -> Iterator[str]:
     job = found.loaded.job
     name = f"{clean(job.job)}: {clean(job.title)}" if job.job else clean(job.title)
     yield from wrap(name)
-    yield f"{found.verdict.upper()}   {counts(found)}"
+    limited = " of what this version computes" if found.verdict == "pass" and uncomputed(found.loaded) else ""
+    yield from wrap(f"{found.verdict.upper()}{limited}   {counts(found)}", rest="      ")
     unanswered = [c for c in found.evaluation.cautions if c.severity == "stop-and-check" and not c.answered]
     if unanswered and found.evaluation.counts["fail"] == 0:
         yield from wrap(
@@ -90,12 +95,8 @@ def _findings(found: Review, everything: bool) -> Iterator[str]:
 
 
 def _finding(found: Review, finding: Finding) -> Iterator[str]:
-    head = (
-        f"{finding.verdict}  {finding.rule}  {finding.at or 'job'}, line {finding.line}"
-        if finding.line
-        else (f"{finding.verdict}  {finding.rule}  {finding.at or 'job'}")
-    )
-    yield from wrap(head, first="  ", rest="        ")
+    head = f"{finding.verdict}  {finding.rule}  {finding.at or 'job'}"
+    yield from wrap(head + (f", line {finding.line}" if finding.line else ""), first="  ", rest="        ")
     yield from wrap(clean(finding.message) + "." + _margin(finding), first="      ", rest="      ")
     if finding.verdict == "pass":
         return
@@ -155,20 +156,8 @@ def _tightest(found: Review) -> str | None:
     return min(shares, key=lambda k: shares[k] or 0.0) if len(shares) > 1 else None
 
 
-def title_of(scope: Scope) -> str:
-    """A requirement in shop words: `run-out at teeth about bearings`."""
-    stack = stack_of(scope)
-    if stack.require.name:
-        return clean(stack.require.name)
-    of, about = stack.of.rpartition(".")[2], stack.about.rpartition(".")[2]
-    if stack.require.what == "torque":
-        return f"torque of the joint in op {stack.of}" if stack.of else "torque"
-    silent = stack.require.what in ("allowance", "chord", "pitch-circle", "torque") or not about
-    return f"{stack.require.what} at {of or 'the mesh'}" + ("" if silent else f" about {about}")
-
-
 def limits_in_words(result: Result, unit: str, digits: int) -> str:
-    """The worst value on its own limit's scale: `25.3 of 30.0 um`, `0.274, at least 0.200 mm`, `8.01 .. 8.03 within …`."""
+    """The worst value on its own limit's scale: `25.3 of 30.0 um`, `0.274 mm, at least 0.200 mm`, …"""
     worst, stack = result.combined.worst, result.stack
     if stack.low is not None and stack.high is not None:
         return (
@@ -176,7 +165,7 @@ def limits_in_words(result: Result, unit: str, digits: int) -> str:
             f"{in_unit(stack.low, unit, digits)} to {show(stack.high, unit, digits)}"
         )
     if stack.low is not None:
-        return f"{in_unit(worst.low, unit, digits)}, at least {show(stack.low, unit, digits)} asked"
+        return f"{show(worst.low, unit, digits)}, at least {show(stack.low, unit, digits)} asked"
     if stack.high is not None:
         return f"{in_unit(worst.high, unit, digits)} of {show(stack.high, unit, digits)}"
     return show(worst.high, unit, digits)
@@ -202,7 +191,7 @@ def _requirement(found: Review, scope: Scope, everything: bool, tightest: bool) 
         line += " (the tightest)"
     yield from wrap(line, first="  ", rest="      ")
     if len(causes) > 1:
-        yield from wrap("then " + ", ".join(causes[1:]), first="      ", rest="      ")
+        yield from wrap("then " + "; ".join(causes[1:]), first="      ", rest="      ")
     if causes:
         yield from wrap(_statistics(result, unit, digits, found.loaded.job.confidence), first="      ", rest="      ")
 
@@ -227,25 +216,58 @@ def _statistics(result: Result, unit: str, digits: int, confidence: float) -> st
 
 
 def _gates(found: Review) -> Iterator[str]:
-    gates = [g for g in found.gates if g.reading is not None]
-    if not gates:
+    if not found.gates:
         return
+    inches = found.book.inches
+    titles = {scope.key: title_of(scope) for scope in found.book.instances("stack")}
     yield "DIAL READING TO ACCEPT, all else as planned"
-    for gate in gates:
-        yield from _gate(gate, inches=found.book.inches)
+    idle = [gate for gate in found.gates if _is_idle(gate)]
+    lost: dict[str, list[str]] = {}
+    for gate in found.gates:
+        title = titles.get(gate.by, gate.by)
+        if gate.reading is not None and gate.reading <= 0.0:
+            lost.setdefault(title, []).append(_dial(gate))
+        elif gate not in idle:
+            yield from wrap(_gate(gate, title, inches=inches), first="  ", rest="      ")
+    for title, dials in lost.items():
+        yield from wrap(f"no reading alone brings {title} inside: {'; '.join(dials)}", first="  ", rest="      ")
+    if idle:
+        yield from wrap("not critical: " + "; ".join(_dial(gate) for gate in idle), first="  ", rest="      ")
 
 
-def _gate(gate: Gate, *, inches: bool) -> Iterator[str]:
-    unit, digits = ("thou", 1) if inches else ("um", 0)
-    dial = {"square": "face run-out", "and_centre": "run-out, second plane,"}.get(gate.step, "run-out")
-    assert gate.reading is not None
-    planned = show(gate.planned, unit, digits)
-    if gate.reading <= 0.0:
-        text = f"op {gate.op}, {dial} on {gate.on}: no reading alone brings {gate.by} inside ({planned} planned)"
-    else:
-        reading = show(gate.reading, unit, digits)
-        text = f"op {gate.op}, {dial} on {gate.on}: up to {reading} ({planned} planned), set by {gate.by}"
-    yield from wrap(text, first="  ", rest="      ")
+def _is_idle(gate: Gate) -> bool:
+    """No requirement looks at this reading, or only from far away: a number would say nothing."""
+    return gate.least <= 0.0 and (gate.reading is None or gate.reading > NOT_CRITICAL * gate.planned)
+
+
+def _dial(gate: Gate) -> str:
+    """`op 40, face run-out on seat`; `op 30 and 40, run-out on bore` where one device with its mark kept serves both."""
+    ops = " and ".join(str(op) for op in dict.fromkeys((gate.op, *gate.also)))
+    reading = {"square": "face run-out", "and_centre": "run-out in the second plane"}.get(gate.step, "run-out")
+    return f"op {ops}, {reading} on {gate.on}"
+
+
+def _gate(gate: Gate, by: str, *, inches: bool) -> str:
+    planned = f"{as_stated(gate.planned, inches=inches)} {'measured' if gate.measured else 'planned'}"
+    high = f", high at {clean(gate.high_at)}" if gate.high_at else ""
+    span = []
+    if gate.least > 0.0:
+        span.append(f"at least {on_the_dial(gate.least, inches=inches, up=True)}")
+    if gate.reading is not None:
+        span.append(f"up to {on_the_dial(gate.reading, inches=inches)}")
+    text = f"{_dial(gate)}: {' and '.join(span)}{high} ({planned})"
+    if gate.reading is not None:
+        text += f", set by {by}"
+    return text + ("; this high spot takes away from another" if gate.least > 0.0 else "")
+
+
+def _uncomputed(found: Review) -> Iterator[str]:
+    stated = uncomputed(found.loaded)
+    if not stated:
+        return
+    yield "NOT COMPUTED BY THIS VERSION"
+    for line in in_lines(stated):
+        yield from wrap(line, first="  ", rest="      ")
 
 
 def _cautions(found: Review, everything: bool) -> Iterator[str]:

@@ -1,14 +1,21 @@
-"""Shop words for figures and causes, shared by the reports. Values come in base units (mm, rad)."""
+"""Shop words for figures and readings, shared by the reports. Values come in base units (mm, rad)."""
 
 from __future__ import annotations
 
+import math
 import textwrap
 import unicodedata
 
-from setupcheck.notation import show
+from setupcheck.notation import FACTOR, show
 from setupcheck.quantities.book import INCH, Book, Scope
+from setupcheck.quantities.requirements import spoken
+from setupcheck.quantities.scopes import stack_of
 
 WIDTH = 80
+FINE_BELOW = 0.010
+"""Dial readings below this are shown one decimal finer [mm]. Source: our screening choice."""
+ROUNDING = 1e-6
+"""Share of a step of the dial that is taken for the noise of a sum. Source: our choice."""
 
 
 def clean(text: str) -> str:
@@ -45,13 +52,32 @@ def wrap(text: str, *, first: str = "", rest: str = "") -> list[str]:
     ) or [first.rstrip()]
 
 
-def cause_in_words(key: str) -> str:
-    """`op 40, hub in spigot: clearance` as a phrase: `clearance of hub in spigot (op 40)`."""
-    place, colon, what = key.rpartition(": ")
-    if not colon:
-        op, comma, rest = key.partition(", ")
-        return f"{rest} ({op})" if comma and op.startswith("op ") else key
-    op, comma, rest = place.partition(", ")
-    if comma and op.startswith("op "):
-        return f"{what} of {rest} ({op})"
-    return f"{what} of {place}"
+def title_of(scope: Scope) -> str:
+    """A requirement in shop words: `run-out at teeth about bearings`; with the parts where both surfaces share a name."""
+    stack = stack_of(scope)
+    what = stack.require.what
+    if stack.require.name:
+        return clean(stack.require.name)
+    if what == "torque":
+        return f"torque of the joint in op {stack.of}" if stack.of else "torque"
+    return f"{what} at {spoken(stack) or 'the mesh'}"
+
+
+def on_the_dial(value: float, *, inches: bool, up: bool = False) -> str:
+    """A dial reading, rounded down (or up) to what an indicator shows: 0.1 um below 10 um, else 1 um; 0.01 or 0.1 thou.
+
+    >>> on_the_dial(0.00437, inches=False), on_the_dial(0.0539, inches=False), on_the_dial(0.0254, inches=True)
+    ('4.3 um', '53 um', '1.0 thou')
+    """
+    unit = INCH["um"] if inches else "um"
+    digits = (1 if inches else 0) + (value < FINE_BELOW)
+    steps = value * FACTOR[unit] * 10**digits
+    whole = math.ceil(steps - ROUNDING) if up else math.floor(steps + ROUNDING)
+    return show(whole / 10**digits / FACTOR[unit], unit, digits)
+
+
+def as_stated(value: float, *, inches: bool) -> str:
+    """A reading with as few decimals as tell it: `3 um`, `12.5 um`, `0.25 thou`."""
+    unit = INCH["um"] if inches else "um"
+    texts = [show(value, unit, digits) for digits in range(4)]
+    return next((t for t in texts if abs(float(t.split()[0]) - value * FACTOR[unit]) < 1e-6), texts[-1])

@@ -3,21 +3,26 @@
 from __future__ import annotations
 
 import inspect
-from collections.abc import Iterator
+from collections.abc import Iterator, Sequence
 
-from setupcheck.errors import SetupcheckError
 from setupcheck.jobfile.reading import LoadedJob
 from setupcheck.ledger.causes import Cause
-from setupcheck.notation import nearest, show
+from setupcheck.ledger.combine import Draws, Share, combine
+from setupcheck.notation import show
 from setupcheck.quantities.book import Answer, Book, Known, Open, Quantity, Scope
 from setupcheck.quantities.judged import Result
 from setupcheck.quantities.scopes import stack_of
-from setupcheck.report.wording import WIDTH, clean, finer, wrap
+from setupcheck.quantities.stacks import Built
+from setupcheck.report.asked import find
+from setupcheck.report.causes import cause_in_words
+from setupcheck.report.formulas import FORMULAS, OF_A_STACK
+from setupcheck.report.wording import WIDTH, clean, finer, title_of, wrap
+from setupcheck.report.written import written
 
 LAWS = {
     "disc": "anywhere within its bound",
     "ring": "this size, direction unknown",
-    "blur": "measured, direction known",
+    "blur": "direction known",
     "clearance-disc": "anywhere in the play",
     "clearance-ring": "against the wall of the play",
     "rectangle": "within ± on two axes",
@@ -28,31 +33,18 @@ LAWS = {
     "undetermined": "not known",
 }
 
+COUNTED = {
+    "divide.count": "places",
+    "divide.worm_ratio": "crank turns for one of the spindle",
+    "divide.circle": "holes",
+    "divide.left_over": "of a hole",
+    "divide.folded_harmonic": "waves round the work",
+    "hold.reach": "times the distance of the planes",
+    "hold.tilt_datums": "(1 wanted)",
+}
+"""What a number without a unit counts."""
 
 RECORD = "(no single number)"
-
-
-def find(book: Book, asked: str) -> tuple[Quantity, list[Scope]]:
-    """The quantity and the instances that `name[@instance]` means.
-
-    Raises: SetupcheckError with the nearest names.
-    """
-    name, _, instance = asked.partition("@")
-    quantity = book.quantities.get(name)
-    if quantity is None:
-        near = nearest(name, list(book.quantities))
-        offer = f"Did you mean {near}?" if near else "Known: " + ", ".join(sorted(book.quantities))
-        raise SetupcheckError(f"there is no quantity '{name}'. {offer}")
-    scopes = book.instances(quantity.per)
-    found = [s for s in scopes if s.key == instance or s.path == instance] if instance else list(scopes)
-    if not found and instance:
-        found = [s for s in scopes if s.key.startswith(instance)]
-    if not found:
-        keys = [s.key for s in scopes]
-        near = nearest(instance, keys)
-        offer = f"Did you mean {name}@{near}?" if near else f"It has: {', '.join(keys) or 'none in this job'}"
-        raise SetupcheckError(f"{name} has no instance '{instance}'. {offer}")
-    return quantity, found
 
 
 def as_working(loaded: LoadedJob, book: Book, asked: str) -> str:
@@ -60,11 +52,14 @@ def as_working(loaded: LoadedJob, book: Book, asked: str) -> str:
 
     Raises: SetupcheckError for an unknown quantity or instance.
     """
-    quantity, scopes = find(book, asked)
-    applying = [s for s in scopes if book.get(quantity.name, s) is not None] or scopes[:1]
+    found = find(book, asked)
+    applying = [(q, s) for q, s in found if book.get(q.name, s) is not None] or found[:1]
     lines: list[str] = []
-    for scope in applying:
-        lines += [*_working(loaded, book, quantity, scope), ""]
+    for number, (quantity, scope) in enumerate(applying):
+        lines += [*_working(loaded, book, quantity, scope)]
+        if scope not in [s for _, s in applying[number + 1 :]]:  # both ends of one stack have the same causes
+            lines += _made_of(loaded, book, scope)
+        lines.append("")
     return "\n".join(lines).rstrip() + "\n"
 
 
@@ -74,28 +69,34 @@ def _answer(book: Book, name: str, scope: Scope, answer: Answer) -> str:
     if isinstance(answer, Open):
         return "cannot tell: " + (answer.because or "fill " + ", ".join(answer.missing))
     if isinstance(answer.value, float | int) and not isinstance(answer.value, bool):
-        return show(float(answer.value), book.unit(name, scope) or "1", book.digits(name, scope))
+        number = show(float(answer.value), book.unit(name, scope) or "1", book.digits(name, scope))
+        return f"{number} {COUNTED.get(name, '')}".rstrip()
     return clean(str(answer.value)) if isinstance(answer.value, str) else RECORD
 
 
 def _working(loaded: LoadedJob, book: Book, quantity: Quantity, scope: Scope) -> Iterator[str]:
     answer = book.get(quantity.name, scope)
     where = f"@{scope.key}" if scope.key else ""
-    yield from wrap(f"{quantity.name}{where} = {_answer(book, quantity.name, scope, answer)}")
-    yield from wrap(
-        f"{quantity.says}" + (f"; asked in line {scope.line}" if scope.line > 1 else ""), first="  ", rest="  "
-    )
-    yield from _formula(quantity.of)
+    yield from wrap(f"{quantity.name}{where} = {_answer(book, quantity.name, scope, answer)}", rest="  ")
+    asked = f"; asked in line {scope.line}" if scope.line > 1 else ""
+    says = f"{title_of(scope)}, {quantity.says}" if scope.kind == "stack" else quantity.says
+    yield from wrap(f"{says}{asked}", first="  ", rest="  ")
+    if quantity.name in OF_A_STACK:
+        yield from _formula(OF_A_STACK[quantity.name])
+    else:
+        yield from _stated(quantity.of)
     for argument, name in quantity.inputs.items():
         yield from _input(loaded, book, scope, argument, name)
     if isinstance(answer, Known) and answer.rests_on:
         yield from wrap("rests on typical values: " + ", ".join(sorted(answer.rests_on)), first="  ", rest="    ")
-    result = book.get("stack.combined", scope) if scope.kind == "stack" else None
-    if isinstance(result, Known) and isinstance(result.value, Result):
-        yield from _causes(loaded, book, result.value, scope)
 
 
-def _formula(of: object) -> Iterator[str]:
+def _formula(told: tuple[str, str], first: str = "  ") -> Iterator[str]:
+    formula, source = told
+    yield from wrap(formula + (f". Source: {source}." if source else ""), first=first, rest=f"{first}  ")
+
+
+def _stated(of: object) -> Iterator[str]:
     """Formula and source as the function itself states them."""
     text = (inspect.getdoc(of) or "").partition(">>>")[0]
     for paragraph in filter(None, (line.strip() for line in text.splitlines())):
@@ -125,29 +126,47 @@ def _input(loaded: LoadedJob, book: Book, scope: Scope, argument: str, name: str
         yield from wrap(f"{argument}: {name} = {shown}", first="    ", rest="      ")
 
 
-def _causes(loaded: LoadedJob, book: Book, result: Result, scope: Scope) -> Iterator[str]:
-    """Every cause with its bound, what it does to the figure, and the line it was stated in."""
-    stack = stack_of(scope)
-    yield f"  {stack.require.what}:"
-    for line in _formula(type(result.figure)):
-        yield f"  {line}"
-    unit, digits = finer(stack.unit, inches=book.inches)
-    yield "  causes, biggest first:"
-    for share in result.combined.shares:
-        lines = sorted({loaded.line(path) for path in share.cause.paths})
-        stated = f" (line {', '.join(str(n) for n in lines)})" if lines else ""
+def _made_of(loaded: LoadedJob, book: Book, scope: Scope) -> Iterator[str]:
+    """The figure behind a stack or behind the stock of a cut: its formula and all its causes."""
+    if scope.kind == "stack":
+        stack, result = stack_of(scope), book.get("stack.combined", scope)
+        if isinstance(result, Known) and isinstance(result.value, Result):
+            c = result.value.combined
+            yield f"  {stack.require.what}:"
+            yield from _formula(FORMULAS[stack.require.what], "    ")
+            yield from _causes(loaded, book, c.shares, c.base, stack.unit)
+    elif scope.kind == "cut":
+        built, draws = book.get("allow.built", scope), book.get("route.draws", scope)
+        if (
+            isinstance(built, Known)
+            and isinstance(draws, Known)
+            and isinstance(built.value, Built)
+            and isinstance(draws.value, Draws)
+        ):
+            found = combine(built.value.figure, draws.value, low=0.0, high=None, confidence=loaded.job.confidence)
+            yield from _formula(FORMULAS["allowance"])
+            yield from _causes(loaded, book, found.shares, found.base, "mm")
+
+
+def _causes(loaded: LoadedJob, book: Book, shares: Sequence[Share], base: float, unit: str) -> Iterator[str]:
+    """Every cause with what it does to the figure, what is stated of it, and the line where."""
+    fine, digits = finer(unit, inches=book.inches)
+    yield "  causes, biggest first:" if shares else "  no cause reaches it: cut in one holding"
+    for share in shares:
         yield from wrap(
-            f"{share.cause.key}: gives {show(share.worst, unit, digits)}, {share.share * 100:.0f} % of all; "
-            f"{_law(share.cause)}, {share.cause.mode}{stated}",
+            f"{cause_in_words(share.cause.key)}: gives {show(share.worst, fine, digits)}, {share.share * 100:.0f} % of "
+            f"all; {LAWS[share.cause.law]}, {share.cause.mode}{_where(loaded, share.cause)}",
             first="    ",
             rest="      ",
         )
-    base = result.combined.base
     if base:
-        yield from wrap(f"known part without any error: {show(base, unit, digits)}", first="    ", rest="      ")
+        yield from wrap(f"known part without any error: {show(base, fine, digits)}", first="    ", rest="      ")
 
 
-def _law(cause: Cause) -> str:
-    return LAWS[cause.law] + (
-        f", known part {abs(cause.mean) * 1000:.2f} um" if cause.mean and not cause.is_real else ""
-    )
+def _where(loaded: LoadedJob, cause: Cause) -> str:
+    """`; 2 um, 8 um (line 94)`: what the job file states of a cause, and where."""
+    if not cause.paths:
+        return ""
+    said = ", ".join(filter(None, (written(loaded, path) for path in cause.paths)))
+    lines = ", ".join(str(n) for n in sorted({loaded.line(path) for path in cause.paths}))
+    return f"; {said} (line {lines})" if said else f" (line {lines})"

@@ -43,6 +43,8 @@ def read_text(path: str | PathLike[str]) -> str:
 
 
 def _bytes_of(file: str) -> bytes:
+    if not file:  # pathlib would take it for the directory it stands in
+        raise _refusal(file, "there is no such file", "Check the name and the directory")
     try:
         found = Path(file).stat()
         if stat.S_ISDIR(found.st_mode):

@@ -45,6 +45,28 @@ require:
   - {what: index-within, of: ring.teeth, about: ring.bore, at_most: 400"}
 """
 
+_SPINDLE = """\
+  spindle:
+    surfaces:
+      journal: {kind: cylinder, diameter: 32 p6, from: 0, to: 30}
+      shoulder: {kind: face, at: 0, facing: +z, diameter: 60}
+      bearings: {kind: cylinder, diameter: 40, from: -80, to: -10}
+    given:
+      - {of: journal, about: bearings, runout: 2 um}
+      - {of: shoulder, about: bearings, face_runout: 4 um, across: 56}
+"""
+_JOIN = """\
+  - op: 30
+    join:
+      outer: ring.bore
+      inner: spindle.journal
+      by: press
+      square: bore
+      stop: {on: ring.back, against: spindle.shoulder}
+"""
+JOINED = RING.replace("machines:\n", _SPINDLE + "machines:\n").replace("require:\n", _JOIN + "require:\n")
+"""The ring pressed on a spindle."""
+
 
 def spoilt(old: str, new: str, text: str = RING) -> str:
     """The job with one place changed; the place must be there exactly once."""

@@ -102,3 +102,88 @@ def test_a_share_above_the_whole_is_refused() -> None:
 def test_a_figure_with_a_sign_may_have_a_limit_below_zero(what: str) -> None:
     asked = f"  - {{what: {what}, of: ring.front, about: ring.back, between: [-10 um, 10 um]}}\n"
     assert read_job_text(RING + asked, "job.yaml")
+
+
+SLOT = "slot: {kind: slot, on_circle: 50, at: 25, width: 8}"
+STOP = "stop: {on: front, error: 10 um}"
+
+
+@pytest.mark.parametrize(
+    ("old", "new"),
+    [
+        ("across: 44", "across: 50"),
+        ("across: 44", "across: 1.95 in"),
+        ("at: -20", "at: -30"),
+        ("at: 10, runout: 90 um", "at: 32, runout: 90 um"),
+        (STOP, f"{STOP}\n      clock: {{on: teeth, number: 60, error: 5 um}}"),
+        ("hub: {}", "hub: {to: 51}"),
+        ("{error: 20 um}", "{error: 20 um, leave: 0}"),
+        ("back: {error: 15 um}", "back: {error: 15 um, leave: 0.3}"),
+        ("runout: 3 um", "runout: {measured: 3 um, high_at: 3deg 20'}"),
+        ("runout: 3 um", "runout: {measured: 3 um, high_at: teeth}"),
+        ("runout: 3 um", "runout: {measured: 3 um, high_at: tooth 60}"),
+        ("runout: 3 um", "runout: {measured: 3 um, high_at: jaw 3}"),
+        ("axis_runout: 2 um", "axis_runout: {measured: 2 um, high_at: mark}"),
+    ],
+)
+def test_what_stands_just_on_its_surface_is_accepted(old: str, new: str) -> None:
+    assert read_job_text(spoilt(old, new), "job.yaml")
+
+
+def test_a_circle_larger_than_the_finished_face_is_accepted_while_its_edge_is_still_to_be_turned() -> None:
+    # the hub is left large in op 10 and finished in op 20: until then the front may be as wide as the bar
+    rough = spoilt("back: {error: 15 um}", "back: {}, hub: {}", spoilt("hub: {}", "hub: {leave_on_diameter: 20}"))
+    assert read_job_text(spoilt("across: 44", "across: 66", rough), "job.yaml")
+    assert ["the indicator cannot run on 110 mm, bar is 100 mm"] == problems(spoilt("across: 44", "across: 110", rough))
+    asked = "  - {what: face-run-out, of: ring.front, about: ring.bore, across: 66, at_most: 9 um}\n"
+    assert ["the indicator cannot run on 66 mm, front is 50 mm"] == problems(rough + asked)
+    assert read_job_text(rough + asked.replace("ring.front", "ring.front@10"), "job.yaml")
+
+
+def test_a_single_slot_has_no_second_place() -> None:
+    second = spoilt(STOP, "clock: {on: slot, number: 2, error: 5 um}", with_surfaces(SLOT))
+    assert ["slot is a single one, and has no number 2"] == problems(second)
+    assert read_job_text(spoilt("number: 2", "number: 1", second), "job.yaml")
+    assert read_job_text(
+        spoilt("runout: 3 um", "runout: {measured: 3 um, high_at: slot}", with_surfaces(SLOT)), "job.yaml"
+    )
+
+
+def test_a_quarter_without_unit_is_offered_in_the_units_of_the_file() -> None:
+    for units in ("mm", "in"):
+        text = spoilt(
+            "units: mm", f"units: {units}", spoilt("width: 18", "width: 1/4", RING.replace('400"', "400 arcsec"))
+        )
+        hints = [p.hint for p in refused(text).problems if "1/4" in p.problem]
+        assert [f"Write 1/4 in, or the decimal 0.25 {units}"] == hints
+
+
+def test_sizes_of_a_hold_are_told_in_the_units_of_the_file() -> None:
+    inches = spoilt("units: mm", "units: in", spoilt("across: 44", "across: 51", RING.replace('400"', "400 arcsec")))
+    assert ["the indicator cannot run on 51 in, front is 50 in"] == problems(inches)
+
+
+def test_what_stands_beside_its_surface_is_told_in_one_run_with_the_values_that_are_wrong() -> None:
+    text = RING
+    for old, new in (
+        ("across: 44", "across: 480"),
+        ("runout: 3 um", "runout: {measured: 3, high_at: upwards}"),
+        ("at: -20", "at: -40"),
+        ("hub: {}", "hub: {to: 51, leave: 0.3, form: 3}"),
+        (STOP, "clock: {on: teeth, number: 99, error: 5}"),
+    ):
+        text = spoilt(old, new, text)
+    assert [
+        "setups.10.hold.centre.at",
+        "setups.10.cut.hub.leave",
+        "setups.10.cut.hub.form",
+        "setups.20.hold.centre.runout.measured",
+        "setups.20.hold.centre.runout.high_at",
+        "setups.20.hold.square.across",
+        "setups.20.hold.clock.number",
+        "setups.20.hold.clock.error",
+    ] == [p.path for p in refused(text).problems]
+
+
+def test_a_steady_is_a_device() -> None:
+    assert read_job_text(spoilt("by: three-jaw, at: 10", "by: steady, at: 10"), "job.yaml")

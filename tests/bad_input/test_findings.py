@@ -76,5 +76,5 @@ def test_what_a_terminal_would_obey_is_taken_out_of_every_text_of_a_job(place: s
 def test_a_requirement_without_a_surface_is_open_and_names_the_key_to_fill() -> None:
     found = reviewed(RING + "  - {what: allowance, at_least: 0.1 mm}\n")
     opened = [f.missing for f in found.evaluation.findings if f.verdict == "open" and f.rule.startswith("STACK")]
-    assert ("require.2.of",) in opened
+    assert ("require[3].of",) in opened
     assert "open" == found.verdict

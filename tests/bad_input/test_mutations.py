@@ -13,9 +13,9 @@ from setupcheck.flow import review
 from setupcheck.jobfile.reading import read_job_text
 from setupcheck.report.text import as_text
 from setupcheck.shipped import shipped
-from tests.bad_input.ring import RING
+from tests.bad_input.ring import JOINED, RING
 
-JOBS = [RING, *(path.read_text("utf-8") for path in sorted(shipped("jobs").glob("*.yaml")))]
+JOBS = [RING, JOINED, *(path.read_text("utf-8") for path in sorted(shipped("jobs").glob("*.yaml")))]
 PAIR = re.compile(r"(?P<key>[A-Za-z_]+):[ ]*(?P<value>\{[^{}]*\}|\[[^\[\]]*\]|[^,{}\[\]\n#]+)")
 JUNK = (
     "", "0", "-1", "1", "1e+9", "-0.001", "0 um", "900 mm", "2,5 um", "nan", ".inf", "15:30", "no", "010", "abc", "''",

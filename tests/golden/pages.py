@@ -51,10 +51,10 @@ def excerpts() -> dict[str, str]:
     after = next(i for i in range(first + 1, len(shimmed)) if re.match(r"  \w+  [A-Z]+-\d|$", shimmed[i]))
     good = reports()["rotator-worm-wheel.txt"].splitlines()
     asked = good.index("WHAT WAS ASKED, at its worst")
-    dials = good.index("DIAL READING TO ACCEPT, all else as planned")
+    dial = next(i for i, line in enumerate(good) if line.startswith("  op 40, run-out on hub: up to"))
     return {
         "shimmed": "\n".join([*head, "", "FINDINGS", *shimmed[first:after], "  …"]),
-        "good": "\n".join([*good[:2], "", *good[asked : asked + 9], "  …", "", *good[dials + 9 : dials + 13], "  …"]),
+        "good": "\n".join([*good[:2], "", *good[asked : asked + 9], "  …", "", *good[dial : dial + 4], "  …"]),
         "mistakes": mistakes(),
     }
 

@@ -76,7 +76,7 @@ def test_a_job_takes_its_limits_from_the_grade_it_names(cell: tuple[float, float
 def test_grade_6_of_the_cumulative_pitch_is_met_up_to_its_limit(fim: float, verdict: str) -> None:
     # F_p = FIM/cos 20 deg, so 27 um allow a run-out of 27 cos 20 = 25.37 um
     job = gear(2.5, 100.0, 6, runout=fim).replace("at_most:", "measured:")
-    found = {f.at: f.verdict for f in findings(job, "STACK-001") if f.at == "require.1"}
+    found = {f.at: f.verdict for f in findings(job, "STACK-001") if f.at == "require[2]"}
     assert [verdict] == list(found.values())
     assert 27.0 * UM == pytest.approx(stack(job, 1).stack.high)
 

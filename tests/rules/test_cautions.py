@@ -124,13 +124,36 @@ OPERATIONS = {
         {"setup.kind": "cut", "setup.machine_kind": "dividing-head", "hold.by": "spigot", "head.tilted": True,
          "cutter.kind": "single-point", "part.material_family": "copper-alloy"},
         ["fly-cutter-indexing", "fly-cutter-one-screw", "gloves-near-spindle", "bronze-chips", "tilted-head-drops"]),
+    "turning between centres": (
+        {"setup.kind": "cut", "setup.machine_kind": "lathe", "hold.by": "centres", "part.material_family": "steel"},
+        ["between-centres", "gloves-near-spindle"]),
+    "reaming holes on a rotary table": (
+        {"setup.kind": "cut", "setup.machine_kind": "rotary-table", "hold.by": "indicator", "cutter.kind": "reamer",
+         "part.material_family": "cast-iron"},
+        ["hands-while-indexing", "drill-and-reamer-chips", "gloves-near-spindle"]),
+    "boring on a rotary table": (
+        {"setup.kind": "cut", "setup.machine_kind": "rotary-table", "cutter.kind": "boring-head",
+         "part.material_family": "steel"},
+        ["hands-while-indexing", "gloves-near-spindle"]),
+    "drilling": (
+        {"setup.kind": "cut", "setup.machine_kind": "drill-press", "cutter.kind": "drill",
+         "part.material_family": "steel"},
+        ["drill-and-reamer-chips", "gloves-near-spindle"]),
+    "grinding between centres": (
+        {"setup.kind": "cut", "setup.machine_kind": "grinder", "hold.by": "taper-mandrel",
+         "cutter.kind": "grinding-wheel", "part.material_family": "steel"},
+        ["between-centres", "grinding-wheel", "grinding-dust-and-coolant", "gloves-near-spindle"]),
+    "grinding in a lathe": (
+        {"setup.kind": "cut", "setup.machine_kind": "lathe", "hold.by": "spigot", "cutter.kind": "grinding-wheel",
+         "part.material_family": "steel"},
+        ["grinding-wheel-in-a-lathe", "gloves-near-spindle"]),
     "hobbing": (
         {"setup.kind": "cut", "setup.machine_kind": "mill", "cutter.kind": "hob", "part.material_family": "steel"},
         ["gloves-near-spindle"]),
     "shrinking on": (
         {"setup.kind": "join", "join.by": "shrink", "heat.by": "oven"},
         ["glove-heat-rating", "hot-part", "shrink-seized-halfway"]),
-    "pressing on": ({"setup.kind": "join", "join.by": "press"}, ["press-force"]),
+    "pressing on": ({"setup.kind": "join", "join.by": "press"}, ["press-force", "press-stand-clear"]),
     "sliding on": ({"setup.kind": "join", "join.by": "slide"}, []),
 }  # fmt: skip
 

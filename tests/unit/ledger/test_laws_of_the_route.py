@@ -375,3 +375,62 @@ def _paths(figure: object) -> set[str]:
         inner = causes_of(push.cause.of) if push.cause.of is not None else {}
         found |= {p for c in (push.cause, *inner.values()) for p in c.paths}
     return found
+
+
+# -- a joint in between --------------------------------------------------------------------------------------------------
+
+
+def joined_while_held(facing: str, mounted: Node) -> Node:
+    """A collar shrunk on a spindle that stays in its chuck; both are then cut as they run. Invented."""
+    dial: Node = {"measured": "30 um", "high_at": "20 deg"}
+    surfaces: Node = {
+        "bearings": {"kind": "cylinder", "diameter": 40, "from": -80, "to": -10, "made": "stock"},
+        "journal": {"kind": "cylinder", "diameter": 30, "from": 0, "to": 40},
+        "shoulder": {"kind": "face", "at": 0, "facing": "+z", "diameter": 60},
+        "nose": {"kind": "cylinder", "diameter": 25, "from": 40, "to": 60},
+    }
+    collar: Node = {
+        "hole": {"kind": "bore", "diameter": 30, "from": 0, "to": 20},
+        "flat": {"kind": "face", "at": 0 if facing == "-z" else 20, "facing": facing, "diameter": 60},
+        "rim": {"kind": "cylinder", "diameter": 90, "from": 0, "to": 20},
+    }
+    join: Node = {"outer": "collar.hole", "inner": "spindle.journal", "by": "shrink", "square": "bore", **mounted}
+    join["stop"] = {"on": "collar.flat", "against": "spindle.shoulder"}
+    return {
+        "setupcheck": 1,
+        "title": "Collar put on in the chuck",
+        "units": "mm",
+        "parts": {
+            "spindle": {"surfaces": surfaces},
+            "collar": {
+                "surfaces": collar,
+                "given": [{"of": "flat", "about": "hole", "face_runout": "5 um", "across": 50}],
+            },
+        },
+        "machines": {"lathe-A": {"kind": "lathe", "axis_runout": "2 um"}},
+        "setups": [
+            {
+                "op": 10,
+                "machine": "lathe-A",
+                "looks_at_tool": "+z",
+                "hold": {
+                    "centre": {"on": "bearings", "by": "four-jaw", "at": -70, "runout": dial},
+                    "and_centre": {"on": "bearings", "by": "four-jaw", "at": -20, "runout": "12 um"},
+                },
+                "cut": {"journal": {}, "shoulder": {"error": "5 um"}},
+            },
+            {"op": 20, "join": join},
+            {"op": 30, "machine": "lathe-A", "keeps": 10, "cut": {"collar.rim": {}, "spindle.nose": {}}},
+        ],
+    }
+
+
+@pytest.mark.parametrize("facing", ["-z", "+z"])
+@pytest.mark.parametrize("mounted", [{}, {"mounted_at": "40 deg"}], ids=["mounting not said", "mounted at 40 deg"])
+def test_what_is_cut_before_and_after_a_joint_in_one_holding_shares_that_holding(facing: str, mounted: Node) -> None:
+    floor = walked(joined_while_held(facing, mounted))
+    journal, nose = (made(floor, s, part="spindle") for s in ("journal", "nose"))
+    rim = made(floor, "rim", part="collar")
+    for other in (nose, rim):
+        assert all(abs(a) + abs(b) < 1e-12 for a, b in (other.lean - journal.lean).terms.values())
+        assert all("axis of lathe-A" in n for n in names(other.offset - journal.axis_at(other.z)))

@@ -94,6 +94,7 @@ def test_json_has_format_1_and_the_keys_that_were_promised(job: Path) -> None:
         "gates",
         "findings",
         "cautions",
+        "not_computed",
     ] == list(data)
     assert data["format"] == 1
     assert {"title", "file", "sha256"} == set(data["job"])
@@ -168,9 +169,9 @@ def test_working_of_a_stack_lists_every_cause_with_its_line(job: Path) -> None:
     lines = job.read_text().splitlines()
     spigot = next(i for i, line in enumerate(lines, 1) if "by: spigot" in line)
     found = " ".join(run("working", str(job), "stack.worst@run-out.wheel-teeth.spindle-bearings").stdout.split())
-    assert (
-        f"op 40, hub in spigot: clearance: gives 8.0 um, 32 % of all; against the wall of the play, planned (line {spigot})"
-        in found
+    told = found.partition("op 40, clearance of hub in spigot: ")[2]
+    assert told.startswith(
+        f"gives 8.0 um, 32 % of all; against the wall of the play, planned; 2 um, 8 um (line {spigot})"
     )
 
 
@@ -194,7 +195,7 @@ def test_an_unknown_rule_is_refused_with_the_nearest() -> None:
 def test_a_house_limit_is_used_and_printed_with_who_and_why(job: Path, tmp_path: Path) -> None:
     house = tmp_path / "house.yaml"
     house.write_text(
-        "house: Toolroom\nlimits:\n  - {rule: HOLD-006, limit: 30 %, who: foreman, why: lapped pairs, when: 2027-01-15}\n"
+        "house: Toolroom\nlimits:\n  - {rule: HOLD-006, limit: 25 %, who: foreman, why: lapped pairs, when: 2027-01-15}\n"
     )
     found = run("review", "--house", str(house), str(job))
     assert found.returncode == 1
@@ -202,11 +203,11 @@ def test_a_house_limit_is_used_and_printed_with_who_and_why(job: Path, tmp_path:
     assert "HOLD-006" in found.stdout
 
 
-WAIVE = "waive: [{rule: HOLD-006, at: setups.40.hold.centre, reason: trial cut watched, until: 2027-03-31}]\n"
+WAIVE = "waive: [{rule: HOLD-004, at: setups.20.hold.centre, reason: trial cut watched, until: 2027-03-31}]\n"
 
 
 def loose(job: Path) -> Path:
-    change(job, "clearance: [2 um, 8 um]", "clearance: [2 um, 9 um]")
+    change(job, "by: soft-jaws, at: 12, runout: 20 um}", "by: soft-jaws, at: 12, runout: {device: soft-jaws}}")
     job.write_text(job.read_text() + WAIVE)
     return job
 

@@ -1,0 +1,102 @@
+"""What each figure is, as the trade writes it, and where the formula comes from. e, t: distance and lean of two axes."""
+
+from __future__ import annotations
+
+DIAL = "geometry of the dial indicator, derived here"
+FLANK = "rigid shift of an involute, derived here; checked against an exact involute in the tests"
+PITCH = "pitch deviations as ISO 1328-1:1995 defines them; " + FLANK
+HOLES = "geometry, derived here"
+NOT_YET = ("not computed by this version", "")
+
+FORMULAS: dict[str, tuple[str, str]] = {
+    "run-out": (
+        "FIM = 2 x distance of the axes at the worse end of the surface (teeth and holes: at the middle of their width)",
+        DIAL,
+    ),
+    "face-run-out": ("FIM = lean of the face to the axis x diameter of the circle it is read on (across)", DIAL),
+    "coaxial": ("zone = 2 x distance of the axes at the worse end of the surface", DIAL),
+    "cumulative-pitch": (
+        "F_p = 2 e / cos(pressure angle) + what dividing adds over the turn, worse flank; dividing adds 2 x amplitude of each "
+        "wave, 2 x error of a setting, the whole drift, each as an arc on the pitch circle. On a worm wheel "
+        "radius x lean x tan(lead angle) joins e",
+        PITCH,
+    ),
+    "single-pitch": (
+        "f_p = largest step from one tooth to the next, worse flank: 2 sin(180 deg / teeth) x e / cos(pressure angle) + what "
+        "dividing adds from one tooth to the next (a wave of k round the wheel: 2 sin(k x 180 deg / teeth) x amplitude)",
+        PITCH,
+    ),
+    "gap-centre-pitch": (
+        "largest less smallest place of the gap centres round the turn = 2 e + what dividing adds over the turn",
+        PITCH,
+    ),
+    "index-range": (
+        "largest less smallest angle of the wheel over one turn, the worm driving one flank = (2 e / cos(pressure angle) + "
+        "what dividing adds over the turn) / pitch radius",
+        FLANK,
+    ),
+    "index-within": (
+        "± half of the index range: (e / cos(pressure angle) + half of what dividing adds over the turn) / pitch radius",
+        FLANK,
+    ),
+    "on-workpiece": (
+        "the index range as an arc on the work: (2 e / cos(pressure angle) + what dividing adds over the turn) x "
+        "diameter on the work / pitch diameter",
+        FLANK,
+    ),
+    "position": (
+        "2 x longest distance of a hole from where it belongs: e + radial error + arc of the dividing error (and of the "
+        "clocking, where the requirement names a clock)",
+        HOLES,
+    ),
+    "chord": (
+        "largest error between neighbouring holes = arc errors of both x cos(180 deg / holes) + radial errors of both x "
+        "sin(180 deg / holes); e cancels",
+        HOLES,
+    ),
+    "pitch-circle": ("2 x mean of the radial errors of all holes; e and the dividing cancel", HOLES),
+    "mid-plane": (
+        "distance of the worst tooth's middle from the worm's axis = error of length along the axis + pitch radius x lean",
+        "leaning ring of teeth, derived here",
+    ),
+    "backlash-swing": ("change of backlash over one turn = 4 e tan(pressure angle)", FLANK),
+    "length": (
+        "distance of the two faces along the axis ± every error of length between them",
+        "sum of the lengths, derived here",
+    ),
+    "squareness": (
+        "lean between the two faces; with across: lean x diameter of the circle it is read on",
+        DIAL,
+    ),
+    "allowance": (
+        "stock left at the thinnest place = half the difference of old and new diameter - distance of old and new axis at "
+        "the worse end; on a face: depth of the cut - radius x lean between old and new face",
+        "a circle turned about another centre, derived here",
+    ),
+    "backlash": NOT_YET,
+    "contact-length": NOT_YET,
+    "contact-area": NOT_YET,
+    "torque": NOT_YET,
+}
+"""what -> (formula in words, its source). e is the distance of the two axes; FIM the full movement of the dial."""
+
+OF_A_STACK: dict[str, tuple[str, str]] = {
+    "stack.worst": (
+        "worst case: high spots of known direction added as vectors, then every other error at its bound straight on top",
+        "arithmetic stacking, common practice",
+    ),
+    "stack.lowest": (
+        "worst case, lower end: known value less every error at its bound",
+        "arithmetic stacking, common practice",
+    ),
+    "stack.rss": (
+        "root of the summed squares of what each cause gives; shown, never judged",
+        "root-sum-square stacking, common practice",
+    ),
+    "stack.likely": (
+        "value that the drawn jobs do not pass at the confidence asked",
+        "drawing every cause, JCGM 101:2008",
+    ),
+    "stack.chance": ("share of the drawn jobs that meet the limits", "drawing every cause, JCGM 101:2008"),
+}
+"""How a stack's numbers are made of what each cause gives."""

@@ -1,0 +1,161 @@
+"""What a job states and this version does not look at: all of it is told, in text and JSON, and a pass says so."""
+
+from __future__ import annotations
+
+import inspect
+import json
+
+import pytest
+from pydantic import BaseModel
+
+from setupcheck.jobfile import models, setups
+from setupcheck.report.json import as_json
+from setupcheck.report.text import as_text
+from setupcheck.report.uncomputed import NOT_LOOKED_AT, in_lines, uncomputed
+from tests.unit.report.sample import GEAR, PLATE, WHEEL, changed, line_of, loaded, reviewed
+
+READ = {
+    "Dimension": "nominal lower upper fit measured uncertainty at",
+    "Deviation": "at_most measured uncertainty standard_uncertainty high_at device mark",
+    "Round": "kind diameter low high hole made",
+    "Flat": "kind at facing diameter hole made",
+    "Throat": "kind diameter at made",
+    "Toothing": "kind count on_circle at width pressure_angle module made",
+    "Pattern": "kind count on_circle at diameter width angle made",
+    "Relation": "of about from_ runout face_runout across length",
+    "Part": "material surfaces given",
+    "Worm": "starts hand axial_module reference_diameter pressure_angle",
+    "Mesh": "wheel",
+    "Cutter": "kind",
+    "Machine": "kind worm_ratio axis_runout hole_circles",
+    "Distance": "from_ length",
+    "Place": "axis worm_axis",
+    "Require": "what of about at_most at_least between grade across at on_diameter clock name",
+    "Waive": "rule at reason until",
+    "Checked": "caution op by note",
+    "Through": "by runout",
+    "Span": "low high",
+    "Centre": "on by at runout clearance rests x y grip through turned",
+    "Square": "on by face_runout across chip",
+    "Spacer": "name length",
+    "Stop": "on against error touches radius direction spacers",
+    "Clock": "on number error",
+    "Hold": "centre and_centre square stop clock",
+    "MidPlane": "found error",
+    "Head": "mid_plane",
+    "Waves": "once_per_turn twice_per_turn once_per_crank",
+    "Divide": "by circle wheel worm setting clamp step drift",
+    "Scatter": "radial tangential by",
+    "Touched": "surface measured",
+    "Cut": "to state leave_on_diameter leave_on_radius leave error removes from_surface finishing_cut form cutter each "
+    "spindle_to_axis",
+    "Heat": "hub shaft by oven_error carry cold_by",
+    "Join": "outer inner by square fit_error clearance rests stop mounted_at",
+    "Setup": "op note machine part looks_at_tool keeps hold head divide cut join",
+    "Job": "setupcheck title job revision units room confidence parts worm mesh cutters machines setups place require "
+    "waive checked",
+}
+"""Entries that some figure, rule, caution or check reads, that only name things, or that are told by their own line
+(size classes and limits, slot widths, the room, everything inside `heat` and `depth_from`)."""
+
+RECORDS = {
+    name: record
+    for module in (models, setups)
+    for name, record in vars(module).items()
+    if inspect.isclass(record)
+    and issubclass(record, BaseModel)
+    and record.__module__ == module.__name__
+    and record.model_fields
+}
+
+
+@pytest.mark.parametrize("name", sorted(RECORDS))
+def test_every_entry_of_the_job_file_is_either_read_or_told(name: str) -> None:
+    read, told = set(READ.get(name, "").split()), set(NOT_LOOKED_AT.get(name, {}))
+    assert set(RECORDS[name].model_fields) == read | told
+    assert not read & told
+
+
+def told(text: str) -> list[str]:
+    return in_lines(uncomputed(loaded(text)))
+
+
+def test_a_joint_lists_its_heat_its_load_and_its_service_with_their_lines() -> None:
+    heat, torque = line_of(WHEEL, "heat: {hub"), line_of(WHEEL, "must_carry:")
+    assert (
+        f"op 70: heat (hub 180 degC, by oven, oven error 10 degC, carry 12 s) (line {heat}); joint degreased "
+        f"(line {heat + 1}); must carry torque 40 N m (line {torque}); serves from 5 degC to 45 degC (line {torque + 1})"
+    ) in told(WHEEL)
+
+
+def test_a_tilted_head_says_that_its_angle_was_not_compared() -> None:
+    tilt = next(line for line in told(WHEEL) if line.startswith("op 40"))
+    assert "tilt 3deg 34' 35\" (not compared with the worm's lead angle), uncertainty of the tilt 2'" in tilt
+    assert "depth 3.3 mm of teeth" in tilt
+    assert "passes 2 mm, 1 mm, 0.3 mm of teeth" in tilt
+
+
+def test_a_head_that_stands_straight_has_no_tilt_to_compare() -> None:
+    straight = changed(WHEEL, ("tilt: 3deg 34' 35\"", "tilt: 0 deg"))
+    assert "not compared" not in " ".join(told(straight))
+
+
+def test_a_mid_plane_found_before_the_tilt_is_told() -> None:
+    before = changed(WHEEL, ("found: after-tilt", "found: before-tilt"))
+    assert "what the tilt does to a mid-plane found before-tilt" in " ".join(told(before))
+    assert "mid-plane found" not in " ".join(told(WHEEL))
+
+
+def test_size_classes_and_size_limits_are_told_and_bare_sizes_are_not() -> None:
+    lines = told(WHEEL)
+    assert any("size class 48 h6 of hub" in line and "size class 32 H6 of bore" in line for line in lines)
+    assert any(line.startswith("spindle: size limits 32.041 ±0.003 mm of journal") for line in lines)
+    assert "rim" not in " ".join(lines)
+
+
+def test_worm_mesh_and_cutter_are_told() -> None:
+    lines = told(WHEEL)
+    assert any(line.startswith("worm: tip diameter 27 mm") and "end float 10 um" in line for line in lines)
+    assert any(line.startswith("mesh: centre distance 66.000 ±0.010 mm") for line in lines)
+    assert any(line.startswith("cutter fly: tip radius 20 mm, bar diameter 20 mm, overhang 55 mm") for line in lines)
+
+
+def test_sizes_of_an_inch_file_stay_in_inches() -> None:
+    assert any("size limits 1.250 +0.0005/0 in of bore" in line for line in told(PLATE))
+
+
+def test_a_tool_change_is_a_count_and_no_length() -> None:
+    job = changed(GEAR, ("cutter: disc-3, depth: 3.4", "cutter: disc-3, tool_change_after: 20, depth: 3.4"))
+    assert "tool change after 20 of teeth" in " ".join(told(job))
+
+
+BARE = changed(
+    GEAR,
+    ("diameter: 20 H7,", "diameter: 20,"),
+    ("{kind: form-cutter, diameter: 60}", "{kind: form-cutter}"),
+    (", depth: 3.4, depth_from: outside, passes: [3.1, 0.3]", ""),
+)
+
+
+def test_a_pass_with_something_left_out_says_that_it_is_one_of_what_is_computed() -> None:
+    text = as_text(reviewed(WHEEL))
+    assert text.splitlines()[1].startswith("PASS of what this version computes   ")
+    assert text.index("WHAT WAS ASKED") < text.index("NOT COMPUTED BY THIS VERSION") < text.index("DIAL READING")
+
+
+def test_a_pass_with_nothing_left_out_is_a_plain_pass() -> None:
+    text = as_text(reviewed(BARE))
+    assert text.splitlines()[1].startswith("PASS   ")
+    assert "NOT COMPUTED" not in text
+
+
+def test_json_lists_the_same_with_path_and_line_as_its_last_key() -> None:
+    data = json.loads(as_json(reviewed(WHEEL)))
+    assert "not_computed" == list(data)[-1]
+    torque = {
+        "at": "setups.70.join.must_carry",
+        "line": line_of(WHEEL, "must_carry:"),
+        "what": "op 70: must carry torque 40 N m",
+    }
+    assert torque in data["not_computed"]
+    assert [] == json.loads(as_json(reviewed(BARE)))["not_computed"]
