@@ -8,6 +8,8 @@ import sys
 
 # One thread is enough for the small matrices here, and starting more would cost more than the whole review.
 os.environ.setdefault("OPENBLAS_NUM_THREADS", "1")
+# Looking for plugins of other packages reads the metadata of everything that is installed; none belongs in this command.
+os.environ.setdefault("PYDANTIC_DISABLE_PLUGINS", "1")
 # A command lives for a fraction of a second: looking for cycles while everything is being imported only delays it.
 gc.set_threshold(200_000)
 
@@ -43,6 +45,9 @@ def run() -> None:
     """Entry point of the console script."""
     try:
         app()
+    except SystemExit:
+        gc.freeze()  # nothing is left to do: the search for cycles at the end would take a quarter of the whole run
+        raise
     except SetupcheckError as wrong:
         print(wrong, file=sys.stderr)
         sys.exit(2)

@@ -148,10 +148,9 @@ def stock_built(floor: Floor, key: str) -> Built | Open | None:
     return stock_left(floor, key) if key in floor.stock else None
 
 
-def least_stock(built: Built, draws: Draws, entry: CutEntry) -> float:
+def least_stock(built: Built, entry: CutEntry) -> float:
     """Worst-case stock at the thinnest place, form error of the old surface taken off. Source: geometry, derived here."""
-    found = combine(built.figure, draws, low=0.0, high=None, confidence=0.95)
-    return found.worst.low - (entry.cut.form or 0.0)
+    return built.figure.base() - sum(p.down for p in built.figure.pushes()) - (entry.cut.form or 0.0)
 
 
 def finishing_cut(entry: CutEntry) -> float:

@@ -193,7 +193,7 @@ ALLOW = (
         "mm",
         3,
         judged.least_stock,
-        {"built": "allow.built", "draws": "route.draws", "entry": ":"},
+        {"built": "allow.built", "entry": ":"},
         "stock left where the cut is thinnest, worst case",
     ),
     Quantity(
