@@ -312,17 +312,22 @@ def seating(held: Held, square: Square, face: State) -> Account:
     total = face_lean(
         square.face_runout, entry, across=across, facing=face.facing or 1, towards=towards, turned=held.turned()
     )
-    if square.chip is not None:
-        total += Account.of(
-            Cause(
-                f"op {held.op}, {square.on}{words}: chip under one side",
-                "disc",
-                held.op,
-                high=square.chip / across,
-                paths=(f"{path}.chip",),
-            )
-        )
+    chip = chip_under(held, square, across)
+    if chip is not None:
+        total += Account.of(chip)
     return total
+
+
+def chip_under(held: Held, square: Square, across: float) -> Cause | None:
+    """A chip or shim under one side of the squared face: it leans the part by up to its thickness over the circle [rad].
+
+    Nobody knows where it lies, so the lean is anywhere in its disc; what it lifts the middle by follows from the lean.
+    """
+    if square.chip is None:
+        return None
+    words = f" on {square.by}" if square.by else ""
+    key = f"op {held.op}, {square.on}{words}: chip under one side"
+    return Cause(key, "disc", held.op, high=square.chip / across, paths=(held.path("square.chip"),))
 
 
 def _stop(held: Held, stop: Stop | None, lean: Account) -> Account:
@@ -362,7 +367,20 @@ def contact(held: Held, stop: Stop, face: State, lean: Account, path: str) -> Ac
         where = Account(stop.radius * cmath.exp(1j * stop.direction))
         return route.touched_height(face, lean, point=held.turned().to_part(where).constant, ring=None)
     if square is not None and held.ref(square.on) == held.ref(stop.on):
-        return face.axial
+        across = square.across if square.across is not None else face.diameter
+        chip = chip_under(held, square, across) if across else None
+        if chip is None or not across:
+            return face.axial
+        # it rests on the chip and on the far edge, so the middle stands off by half the chip: one way only
+        lift = Cause(
+            f"{chip.key}, lift of the middle",
+            "high-point",
+            held.op,
+            mode="derived",
+            paths=chip.paths,
+            of=Account.of(chip) * (across / 2.0),
+        )
+        return route.touched_height(face, lean, point=None, ring=lift)
     radius = stop.radius if stop.radius is not None else (face.diameter or 0.0) / 2.0
     if radius == 0.0:
         return Account.of(

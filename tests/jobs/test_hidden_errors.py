@@ -255,3 +255,12 @@ def test_the_gate_of_a_reading_that_cancels_another_has_a_least_and_a_largest_va
 def test_a_kept_device_has_one_gate_for_all_its_holds() -> None:
     gates = [g for g in judged(GEAR).gates if g.planned in (0.004, 0.005)]
     assert [("30/centre", (40,)), ("30/and_centre", (40,))] == [(g.key, g.also) for g in gates]
+
+
+def test_a_chip_under_one_side_leans_the_part_and_lifts_its_middle_one_way_only() -> None:
+    text = changed(FACED, "face_runout: 2 um, across: 80}", "face_runout: 2 um, across: 80, chip: 12 um}")
+    found = judged(text)
+    # lean: 2 + 12 um across 80 mm; middle lifted by up to 6 um off the chuck, so the ring comes out thinner, never thicker
+    assert 14.0 == pytest.approx(worst(found, "squareness"))
+    length = next(r.combined.worst for k, r in found.results.items() if k.startswith("length"))
+    assert (9.986, 10.008) == (pytest.approx(length.low), pytest.approx(length.high))
