@@ -6,13 +6,13 @@ from collections.abc import Mapping
 from dataclasses import dataclass, field
 from functools import cache
 from pathlib import Path
+from typing import TYPE_CHECKING
 
 from setupcheck.jobfile.reading import LoadedJob, read_job
 from setupcheck.quantities.book import Book, Known, Scope
 from setupcheck.quantities.facts import UnknownFact, facts_of
 from setupcheck.quantities.gates import Gate, gates
 from setupcheck.quantities.judged import Result
-from setupcheck.quantities.remedies import Remedy, remedies
 from setupcheck.quantities.route import walk
 from setupcheck.quantities.scopes import scopes
 from setupcheck.quantities.shop import Floor
@@ -21,17 +21,19 @@ from setupcheck.rulebook import (
     Answer,
     Evaluation,
     Fact,
-    House,
     RuleBook,
     Unknown,
     Verdict,
     Waiver,
     evaluate,
-    load_house,
     load_rulebook,
     verdict,
 )
 from setupcheck.shipped import shipped
+
+if TYPE_CHECKING:
+    from setupcheck.quantities.remedies import Remedy
+    from setupcheck.rulebook.house import House
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -77,7 +79,7 @@ def review(job: LoadedJob | str | Path, *, house: str | Path | None = None, on: 
     loaded = job if isinstance(job, LoadedJob) else load_job(job)
     floor, book = prepare(loaded)
     book_of_rules = rules()
-    own = load_house(Path(house), book_of_rules, quantities=book.quantities) if house is not None else None
+    own = _house(Path(house), book_of_rules, book) if house is not None else None
 
     def facts(scope: Scope, name: str) -> Fact:
         found = facts_of(floor, scope, name)
@@ -95,9 +97,24 @@ def review(job: LoadedJob | str | Path, *, house: str | Path | None = None, on: 
         verdict(found.findings, found.cautions),
         results,
         tuple(gates(book.scopes, list(results.items()))),
-        remedies(loaded, results),
+        _remedies(loaded, results),
         on,
     )
+
+
+def _house(path: Path, rulebook: RuleBook, book: Book) -> House:
+    from setupcheck.rulebook.house import load_house  # few jobs have one
+
+    return load_house(path, rulebook, quantities=book.quantities)
+
+
+def _remedies(loaded: LoadedJob, results: Mapping[str, Result]) -> Mapping[str, Remedy]:
+    """Remedies are looked for only where a stack is outside its limit."""
+    if all(r.margin is None or r.margin >= 0.0 for r in results.values()):
+        return {}
+    from setupcheck.quantities.remedies import remedies
+
+    return remedies(loaded, results)
 
 
 def prepare(loaded: LoadedJob) -> tuple[Floor, Book]:

@@ -6,7 +6,6 @@ from dataclasses import dataclass
 
 from setupcheck.jobfile.models import Require
 from setupcheck.jobfile.sense import limit_kind
-from setupcheck.physics.gear_grades import LIMITS, grade_limit
 from setupcheck.quantities.shop import Floor
 
 
@@ -79,6 +78,8 @@ def _surface(text: str, *, whole: bool = False) -> str:
 
 def _grade(floor: Floor, require: Require, path: str) -> float:
     """Limit [mm] of ISO 1328-1:1995 or -2:1997 for a cylindrical gear of the stated grade."""
+    from setupcheck.physics.gear_grades import LIMITS, grade_limit
+
     if require.what not in LIMITS:
         raise floor.problem(
             f"{path}.grade", f"a grade says nothing about {require.what}", f"Write it for one of: {', '.join(LIMITS)}"

@@ -7,7 +7,7 @@ from collections.abc import Callable
 from dataclasses import dataclass
 
 from setupcheck.jobfile.names import Ref
-from setupcheck.ledger import figures, holes, route, teeth
+from setupcheck.ledger import figures, route, teeth
 from setupcheck.ledger.account import Account
 from setupcheck.ledger.figures import Figure
 from setupcheck.ledger.route import State
@@ -197,6 +197,8 @@ def _backlash_swing(floor: Floor, stack: Stack) -> Built | Open:
 
 def _holes(floor: Floor, stack: Stack) -> Built | Open:
     """position, chord and pitch-circle of a hole pattern."""
+    from setupcheck.ledger import holes
+
     what = stack.require.what
     g = _state(floor, stack, stack.of, "of")
     if isinstance(g, Open):

@@ -2,12 +2,16 @@
 
 from __future__ import annotations
 
+from typing import TYPE_CHECKING
+
 from setupcheck.flow import Review
 from setupcheck.notation import show
-from setupcheck.quantities.remedies import Remedy
 from setupcheck.report.causes import cause_in_parts
 from setupcheck.report.wording import finer, on_the_dial
 from setupcheck.rulebook import Finding
+
+if TYPE_CHECKING:
+    from setupcheck.quantities.remedies import Remedy
 
 STACK_RULES = ("STACK-001", "STACK-002")
 """Rules whose remedy is worked out from the stack itself."""

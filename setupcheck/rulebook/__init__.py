@@ -1,13 +1,12 @@
 """The rule book: what has to hold, how good the reasons are, and what a job makes of it. Knows no job file, no numpy.
 
-`load_rulebook` reads the rule files, `load_house` a shop's own limits, `evaluate` judges the numbers of one job,
+`load_rulebook` reads the rule files, `house.load_house` a shop's own limits, `evaluate` judges the numbers of one job,
 `verdict` sums up, `describe` prints the rules.
 """
 
 from setupcheck.rulebook.cautions import TO_CHECK, TO_MIND
 from setupcheck.rulebook.evaluate import evaluate, ordered, verdict
 from setupcheck.rulebook.facts import FACTS
-from setupcheck.rulebook.house import House, HouseLimit, load_house
 from setupcheck.rulebook.judging import GUARD_FACTOR, Judgement, judge, judge_word
 from setupcheck.rulebook.loading import load_rulebook
 from setupcheck.rulebook.needs import BY_INSTANCE, KINDS, NAME_FACT, SURFACE_FACT, Book, Fact, Facts, Scope, Unknown
@@ -47,8 +46,6 @@ __all__ = [
     "Fact",
     "Facts",
     "Finding",
-    "House",
-    "HouseLimit",
     "Judgement",
     "Rule",
     "RuleBook",
@@ -60,7 +57,6 @@ __all__ = [
     "evaluate",
     "judge",
     "judge_word",
-    "load_house",
     "load_rulebook",
     "ordered",
     "verdict",

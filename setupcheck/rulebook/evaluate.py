@@ -4,11 +4,11 @@ from __future__ import annotations
 
 from collections.abc import Iterable, Sequence
 from dataclasses import dataclass, replace
+from typing import TYPE_CHECKING
 
 from setupcheck.rulebook import cautions as safety
 from setupcheck.rulebook.answers import unanswered_entries
 from setupcheck.rulebook.facts import applies
-from setupcheck.rulebook.house import House, HouseLimit
 from setupcheck.rulebook.judging import judge, judge_word, outside, reaches
 from setupcheck.rulebook.limits import Limits, limit_of, limits_of
 from setupcheck.rulebook.messages import cannot_tell, fill, shown_pair
@@ -25,6 +25,9 @@ from setupcheck.rulebook.records import (
     Waiver,
 )
 from setupcheck.rulebook.waivers import waived
+
+if TYPE_CHECKING:
+    from setupcheck.rulebook.house import House, HouseLimit
 
 
 def evaluate(

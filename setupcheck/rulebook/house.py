@@ -5,7 +5,6 @@ from __future__ import annotations
 import hashlib
 from collections.abc import Mapping
 from dataclasses import dataclass
-from datetime import date
 from pathlib import Path
 
 from setupcheck.rulebook.entries import Entry, list_of, open_file
@@ -13,6 +12,7 @@ from setupcheck.rulebook.judging import outside
 from setupcheck.rulebook.needs import Quantity
 from setupcheck.rulebook.records import Place, RuleBook
 from setupcheck.rulebook.units import read_number
+from setupcheck.rulebook.waivers import is_date
 
 
 @dataclass(frozen=True, slots=True)
@@ -85,15 +85,3 @@ def _limit(entry: Entry, rulebook: RuleBook, quantities: Mapping[str, Quantity])
     if not is_date(when):
         raise entry.need("when").wrong(f"'{when}' is not a date", "Write year-month-day, as in 2027-01-15")
     return HouseLimit(rule_id, number.value, number.text, entry.text("who"), entry.text("why"), when, entry.place)
-
-
-def is_date(text: str) -> bool:
-    """True for a day written year-month-day.
-
-    >>> is_date("2027-01-15"), is_date("2027-02-30"), is_date("15.1.2027"), is_date("20270115")
-    (True, False, False, False)
-    """
-    try:
-        return date.fromisoformat(text).isoformat() == text
-    except ValueError:
-        return False

@@ -14,11 +14,11 @@ from __future__ import annotations
 
 from collections.abc import Iterable, Sequence
 from dataclasses import replace
+from datetime import date
 
 from setupcheck.errors import RuleBookError
 from setupcheck.notation import nearest
 from setupcheck.rulebook.engine import engine_finding
-from setupcheck.rulebook.house import is_date
 from setupcheck.rulebook.records import Finding, RuleBook, Verdict, Waiver
 
 
@@ -103,3 +103,15 @@ def _finding(rule: str, verdict: Verdict, waiver: Waiver, text: str, remedy: str
     return engine_finding(
         rule, verdict=verdict, at=waiver.path, line=waiver.line, message=text, remedy=remedy, missing=missing
     )
+
+
+def is_date(text: str) -> bool:
+    """True for a day written year-month-day.
+
+    >>> is_date("2027-01-15"), is_date("2027-02-30"), is_date("15.1.2027"), is_date("20270115")
+    (True, False, False, False)
+    """
+    try:
+        return date.fromisoformat(text).isoformat() == text
+    except ValueError:
+        return False

@@ -16,10 +16,10 @@ from setupcheck.rulebook import (
     Finding,
     Unknown,
     evaluate,
-    load_house,
     ordered,
     verdict,
 )
+from setupcheck.rulebook.house import load_house
 
 from .bookshelf import QUANTITIES, RULE, load
 from .fakebook import FakeBook, FakeScope, Has, Lacks, facts_from
