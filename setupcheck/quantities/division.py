@@ -105,6 +105,11 @@ def stated(setup: Setup, count: int) -> str | Open:
     return "stated"
 
 
+def known_kind(stated: str) -> str:
+    """`stated`, of errors that are not missing (missing ones have their own finding). Source: the job file."""
+    return stated
+
+
 RATIO, COUNT = {"worm_ratio": "divide.worm_ratio"}, {"count": "divide.count"}
 
 DIVIDE = (
@@ -162,5 +167,14 @@ DIVIDE = (
         stated,
         {"setup": ":", **COUNT},
         "whether the dividing method's errors are stated",
+    ),
+    Quantity(
+        "divide.error_kind",
+        "setup",
+        "",
+        0,
+        known_kind,
+        {"stated": "settled divide.error_stated"},
+        "how good the dividing method's errors are known, where they are known at all",
     ),
 )

@@ -44,6 +44,11 @@ def error_stated(entry: HoldEntry, key: str) -> str | Open:
     return "typical"
 
 
+def kind_of_error(stated: str) -> str:
+    """measured, stated or typical, of an error that is not missing (a missing one has its own finding). Source: the job file."""
+    return stated
+
+
 def direction_known(floor: Floor, key: str, entry: HoldEntry) -> str | None:
     """known or no-mark for a reading that names its high spot; None where no direction is named. Source: the job file."""
     given = entry.error

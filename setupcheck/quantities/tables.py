@@ -181,6 +181,24 @@ HOLD = (
         {"floor": "route.floor", "setup": ":"},
         "whether the machine's own error is stated, typical or missing",
     ),
+    Quantity(
+        "hold.error_kind",
+        "hold",
+        "",
+        0,
+        holds.kind_of_error,
+        {"stated": "settled hold.error_stated"},
+        "how good the hold's error is known, where it is known at all",
+    ),
+    Quantity(
+        "machine.error_kind",
+        "setup",
+        "",
+        0,
+        holds.kind_of_error,
+        {"stated": "settled machine.error_stated"},
+        "how good the machine's own error is known, where it is known at all",
+    ),
 )
 
 ALLOW = (

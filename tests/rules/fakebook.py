@@ -101,6 +101,7 @@ QUANTITIES: Mapping[str, FakeQuantity] = {
         FakeQuantity("datum.state", "hold", "", 0),
         FakeQuantity("hold.tilt_datums", "setup", "1", 0),
         FakeQuantity("hold.error_stated", "hold", "", 0),
+        FakeQuantity("hold.error_kind", "hold", "", 0),
         FakeQuantity("hold.direction_known", "hold", "", 0),
         FakeQuantity("hold.within_plan", "hold", "um", 1),
         FakeQuantity("hold.planned", "hold", "um", 1),
@@ -108,6 +109,7 @@ QUANTITIES: Mapping[str, FakeQuantity] = {
         FakeQuantity("hold.clearance_share", "hold", "%", 0),
         FakeQuantity("hold.reach", "cut", "1", 2),
         FakeQuantity("machine.error_stated", "setup", "", 0),
+        FakeQuantity("machine.error_kind", "setup", "", 0),
         FakeQuantity("allow.least_stock", "cut", "mm", 3),
         FakeQuantity("allow.finishing_cut", "cut", "mm", 3),
         FakeQuantity("divide.left_over", "setup", "1", 3),
@@ -115,6 +117,7 @@ QUANTITIES: Mapping[str, FakeQuantity] = {
         FakeQuantity("divide.step_error", "setup", "arcsec", 2),
         FakeQuantity("divide.setting_error", "setup", "arcsec", 2),
         FakeQuantity("divide.error_stated", "setup", "", 0),
+        FakeQuantity("divide.error_kind", "setup", "", 0),
         FakeQuantity("place.nominal_gap", "place", "um", 1),
     )
 }
