@@ -74,6 +74,9 @@ def _kept(drawing: Drawing, i: int, setup: Mapping[str, object], floor: _Floor) 
     """`keeps` over a setup that held the same part again; a joining or another part in between opens nothing."""
     first = drawing.position.get(number_of(setup.get("keeps")) or 0, i)
     part = drawing.held_part(drawing.setups[first])
+    if setup.get("keeps") is not None and setup.get("looks_at_tool") is not None:
+        says = "the part lies as the kept holding has it"
+        yield Miss(("setups", i, "looks_at_tool"), f"{says}. Leave looks_at_tool away, or write a hold of its own")
     if part is None:
         return
     piece = floor.piece(part)

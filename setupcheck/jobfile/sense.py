@@ -80,6 +80,7 @@ def contradictions(
     for i, asked in require.items():
         yield from _require(i, asked)
         yield from _pitch(i, asked, parts)
+        yield from _dial(i, asked, parts)
 
 
 def _part(
@@ -259,6 +260,26 @@ def _pitch(i: int, asked: Require, parts: Mapping[str, Mapping[str, Surface]]) -
             ("require", i, "of"),
             f"{asked.of} is a single {_ONE[surface.kind]}, which has no {asked.what}. "
             "Write a toothing or a pattern of two or more",
+        )
+
+
+_OF_AXES, _OF_FACES = ("run-out", "coaxial"), ("face-run-out",)
+
+
+def _dial(i: int, asked: Require, parts: Mapping[str, Mapping[str, Surface]]) -> Iterator[Miss]:
+    """A run-out of a face, or a face run-out of something round: the dial stands the other way."""
+    if asked.what not in (*_OF_AXES, *_OF_FACES) or asked.of is None:
+        return
+    ref = find_surface(asked.of, {part: tuple(surfaces) for part, surfaces in parts.items()})
+    surface = parts[ref.part][ref.surface] if isinstance(ref, Ref) else None
+    if surface is None:
+        return
+    if surface.kind == "face" and asked.what in _OF_AXES and asked.at is None:  # with `at`, its axis carried there
+        yield Miss(("require", i, "what"), f"{asked.of} is a face, which has no {asked.what}. Write face-run-out")
+    elif surface.kind != "face" and asked.what in _OF_FACES:
+        yield Miss(
+            ("require", i, "what"),
+            f"{asked.of} is no face, and has no face run-out. Write run-out, or squareness for a lean",
         )
 
 

@@ -10,7 +10,7 @@ from __future__ import annotations
 
 import math
 from collections.abc import Mapping
-from dataclasses import dataclass, field
+from dataclasses import dataclass, field, replace
 
 from setupcheck.ledger.causes import Cause
 
@@ -101,6 +101,25 @@ class Account:
             low -= max(-push, 0.0) if cause.is_one_sided else abs(push)
             high += max(push, 0.0) if cause.is_one_sided else abs(push)
         return low, high
+
+    def origins(self) -> dict[Cause, None]:
+        """All causes that stand behind this account, those within high points included."""
+        found: dict[Cause, None] = {}
+        for cause in self.terms:
+            found.update(cause.of.origins() if cause.of is not None else {cause: None})
+        return found
+
+    def with_cause(self, old: Cause, new: Cause) -> Account:
+        """The same account with one cause replaced, within high points too."""
+        if old not in self.origins():
+            return self
+        terms: dict[Cause, tuple[complex, complex]] = {}
+        for cause, ab in self.terms.items():
+            if cause.of is not None:
+                terms[replace(cause, of=cause.of.with_cause(old, new))] = ab
+            else:
+                terms[new if cause == old else cause] = ab
+        return Account(self.constant, terms)
 
     def undetermined(self) -> tuple[str, ...]:
         """Job paths of the causes about which nothing is known and that have not cancelled."""

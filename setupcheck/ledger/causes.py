@@ -121,6 +121,10 @@ class Cause:
         """True where X is never negative: it moves a figure one way only."""
         return self.law in ("one-sided", "high-point")
 
+    def scaled(self, factor: float) -> Cause:
+        """The same cause with its stated size `factor` times as large; the uncertainty of a reading stays as it is."""
+        return replace(self, high=self.high * factor, low=self.low * factor, mean=self.mean * factor)
+
     def turned_with(self, angle: Cause) -> Cause:
         """This cause on a part that was turned by an unknown `angle`: no known direction, nothing shared with the other part."""
         if self.shared:

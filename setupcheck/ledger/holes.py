@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import cmath
 import math
 from dataclasses import dataclass
 from typing import TYPE_CHECKING
@@ -31,13 +32,23 @@ class HolePosition:
     turn: Account | None
     signed: bool = False
 
+    def _worst_hole(self) -> Account:
+        """Vector of the hole that can stand farthest off, by everything it shares with the others: where the pattern's axis
+        lies, how it is turned and how large it is act together on each hole, so one cause counts once, with its direction."""
+        arcs = [r * self.pattern.radius * self.pattern.turn for r in self.pattern.rounding] or [
+            0.0
+        ] * self.pattern.count
+        middle = (max(arcs) + min(arcs)) / 2.0 if self.turn is None else 0.0
+        turn = (self.turn if self.turn is not None else Account()) * self.pattern.radius
+        found = []
+        for number, arc in enumerate(arcs, 1):
+            there = cmath.exp(1j * self.pattern.angle(number))
+            moved = self.offset + self.pattern.radial * there + turn * (1j * there)
+            found.append(moved.plus_constant(1j * there * (arc - middle)))
+        return max(found, key=Account.largest)
+
     def base(self) -> float:
-        arcs = [r * self.pattern.radius * self.pattern.turn for r in self.pattern.rounding] or [0.0]
-        turned = -(max(arcs) + min(arcs)) / 2.0
-        if self.turn is not None:
-            turned = self.turn.known().real * self.pattern.radius
-        away = max(abs(arc + turned) for arc in arcs)
-        return 2.0 * away + vector_pushes(self.offset, 2.0)[0] + 2.0 * abs(self.pattern.radial.known().real)
+        return vector_pushes(self._worst_hole(), 2.0)[0]
 
     def pushes(self) -> list[Push]:
         r = self.pattern.radius
@@ -46,10 +57,7 @@ class HolePosition:
             Push(s.cause, 0.0, 2.0 * s.bound * (r if s.along == "angle" else 1.0)) for s in self.pattern.scatter
         ]
         division += [Push(c, 0.0, 2.0 * r * c.bound) for c in self.pattern.drift]
-        division += [Push(p.cause, 0.0, 2.0 * p.size) for p in real_pushes(self.pattern.radial)[1]]
-        if self.turn is not None:
-            division += [Push(p.cause, 0.0, 2.0 * p.size) for p in real_pushes(self.turn, r)[1]]
-        return merged(vector_pushes(self.offset, 2.0)[1], division)
+        return merged(vector_pushes(self._worst_hole(), 2.0)[1], division)
 
     def undetermined(self) -> tuple[str, ...]:
         mine = [p.cause.missing for p in self.pattern.periodic if p.cause.law == "undetermined"]

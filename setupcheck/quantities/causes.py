@@ -39,13 +39,17 @@ class Turned:
 
 @dataclass(frozen=True, slots=True)
 class Entry:
-    """Where an error entry stands: its name in shop words, operation, path, and the device it falls back on."""
+    """Where an error entry stands: its name in shop words, operation, path, and the device it falls back on.
+
+    second  it speaks of the second centring plane
+    """
 
     name: str
     op: int | None
     path: str
     device: str
     what: str = "runout"
+    second: bool = False
 
     def missing(self) -> Cause:
         return Cause(self.name, "undetermined", self.op, missing=self.path)
@@ -61,6 +65,17 @@ def stated_direction(high_at: str | None) -> Towards:
         return Towards(math.remainder(angle(high_at), math.tau), why="known")
     except NotationError:
         return Towards()
+
+
+def kept_key(given: Deviation, what: str, *, second: bool) -> str:
+    """Name of the one cause that a kept device is, whichever setup speaks of it.
+
+    Only equal statements are one cause: a second reading of the same device is another piece of knowledge, and its second
+    plane another error than its first.
+    """
+    size = given.measured if given.measured is not None else given.at_most if given.at_most is not None else 0.0
+    said = f"{what.replace('_', ' ').replace('runout', 'run-out')} {show(size, 'um', 3).replace('.000', '')}"
+    return f"{given.device}, mark kept: {said}{', second plane' if second else ''}"
 
 
 def vector_error(
@@ -95,10 +110,7 @@ def vector_error(
             entry.name, "disc", entry.op, high=size * row.value, mode="typical", paths=(entry.path,), rests_on=row.name
         )
     if given.device and given.mark == "kept":
-        # only equal statements are one cause: a second reading of the same device is another piece of knowledge
-        size = given.measured if given.measured is not None else given.at_most if given.at_most is not None else 0.0
-        said = f"{entry.what.replace('_', ' ').replace('runout', 'run-out')} {show(size, 'um', 3).replace('.000', '')}"
-        shared = replace(cause, key=f"{given.device}, mark kept: {said}", shared=True)
+        shared = replace(cause, key=kept_key(given, entry.what, second=entry.second), shared=True)
         seen = turned.to_part(Account.of(shared))
         return seen * float(turned.sg) if lean else seen
     return Account.of(cause)

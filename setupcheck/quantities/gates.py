@@ -11,6 +11,7 @@ from setupcheck.ledger.account import Account
 from setupcheck.ledger.causes import TRUNCATION, TRUNCATION_2D, Cause
 from setupcheck.ledger.figures import Figure, alternatives
 from setupcheck.quantities.book import Scope
+from setupcheck.quantities.causes import kept_key
 from setupcheck.quantities.judged import Result
 from setupcheck.quantities.scopes import HoldEntry
 
@@ -98,7 +99,7 @@ def gates(scopes: Sequence[Scope], results: Sequence[tuple[str, Result]]) -> lis
     FIM = (limit - what all others need) / (figure per FIM), the smallest over the requirements.
     """
     found: list[Gate] = []
-    shared: dict[tuple[str, float, str], int] = {}
+    shared: dict[str, int] = {}
     for scope in scopes:
         entry = scope.node
         if not isinstance(entry, HoldEntry) or entry.key == "error" or entry.error is None or scope.op is None:
@@ -108,7 +109,7 @@ def gates(scopes: Sequence[Scope], results: Sequence[tuple[str, Result]]) -> lis
         if not planned:
             continue
         if given.device and given.mark == "kept" and given.high_at is None:
-            same = (given.device, planned, entry.key)
+            same = kept_key(given, entry.key, second=entry.step == "and_centre")
             if same in shared:
                 first = found[shared[same]]
                 found[shared[same]] = replace(first, also=(*first.also, scope.op))
@@ -123,13 +124,16 @@ def _gate(
     scope: Scope, entry: HoldEntry, given: Deviation, planned: float, results: Sequence[tuple[str, Result]]
 ) -> Gate:
     path = f"{scope.path}.{entry.key}"
-    kept = f"{given.device}, mark kept: " if given.device and given.mark == "kept" else ""
+    kept = (
+        kept_key(given, entry.key, second=entry.step == "and_centre") if given.device and given.mark == "kept" else ""
+    )
     lowest, highest, by = 0.0, math.inf, ""
     directed = False
     for key, result in results:
         for cause in _causes(result.figure, path, kept):
             directed = directed or bool(cause.mean)
-            low, high = span(result, cause, planned, guard_of(given))
+            stack = result.stack
+            low, high = span(result.figure, cause, planned, guard_of(given), low=stack.low, high=stack.high)
             lowest = max(lowest, low)
             if high < highest:
                 highest, by = high, key
@@ -150,22 +154,39 @@ def _gate(
     )
 
 
+def origins(figure: Figure) -> list[Cause]:
+    """Every cause behind a figure, at any of the places it is the worst of, those within high points included."""
+    found: dict[Cause, None] = {}
+    for one in alternatives(figure):
+        for push in one.pushes():
+            found.update(push.cause.of.origins() if push.cause.of is not None else {push.cause: None})
+    return list(found)
+
+
 def _causes(figure: Figure, path: str, kept: str) -> list[Cause]:
-    """Causes of a figure that one hold entry states, at any of the places the figure is the worst of."""
-    causes = {p.cause: None for one in alternatives(figure) for p in one.pushes()}
-    return [c for c in causes if path in c.paths or (kept and c.key.startswith(kept))]
+    """Causes of a figure that one hold entry states."""
+    return [c for c in origins(figure) if path in c.paths or (kept and c.key == kept)]
 
 
-def span(result: Result, cause: Cause, planned: float, guard: float) -> tuple[float, float]:
-    """(least, largest) dial reading at which one requirement is met; (0, 0) where none will do."""
-    low, high = result.stack.low, result.stack.high
-    if not cause.mean:
-        factor = room(result.figure, cause, low=low, high=high)
+def span(
+    figure: Figure, cause: Cause, planned: float, guard: float, *, low: float | None, high: float | None
+) -> tuple[float, float]:
+    """(least, largest) reading at which one requirement is met; (0, 0) where none will do.
+
+    planned, guard  what the entry of the job file says now, and what its uncertainty adds
+    """
+    plain = not cause.mean and all(
+        cause not in p.cause.of.origins()
+        for one in alternatives(figure)
+        for p in one.pushes()
+        if p.cause.of is not None
+    )
+    if plain:
+        factor = room(figure, cause, low=low, high=high)
         return (0.0, math.inf) if factor is None else (0.0, reading_for(planned, guard, factor))
 
     def excess(reading: float) -> float:
-        other = replace(cause, mean=cause.mean * (reading / planned))
-        return worst_excess(with_cause(result.figure, cause, other), low, high)
+        return worst_excess(with_cause(figure, cause, cause.scaled(reading / planned)), low, high)
 
     return _interval(excess, planned)
 
@@ -201,16 +222,11 @@ def _interval(excess: Callable[[float], float], planned: float) -> tuple[float, 
 def with_cause(figure: Figure, old: Cause, new: Cause) -> Figure:
     """The same figure with one cause replaced in all its accounts."""
 
-    def swapped(account: Account) -> Account:
-        if old not in account.terms:
-            return account
-        return Account(account.constant, {new if c == old else c: ab for c, ab in account.terms.items()})
-
     changed: dict[str, object] = {}
     for f in fields(figure):  # type: ignore[arg-type]
         value = getattr(figure, f.name)
         if isinstance(value, Account):
-            changed[f.name] = swapped(value)
+            changed[f.name] = value.with_cause(old, new)
         elif isinstance(value, tuple) and value and isinstance(value[0], Account):
-            changed[f.name] = tuple(swapped(a) for a in value)
+            changed[f.name] = tuple(a.with_cause(old, new) for a in value)
     return replace(figure, **changed)  # type: ignore[type-var]

@@ -170,7 +170,8 @@ def _place_angle(held: Held, thing: str, number: int, path: str) -> float:
 
 def _entry(held: Held, centre: Centre, step: str, what: str, key: str) -> Entry:
     words = DEVICES[centre.by].words
-    return Entry(f"op {held.op}, {centre.on} {words}: {what}", held.op, f"{held.path(step)}.{key}", centre.by)
+    path = f"{held.path(step)}.{key}"
+    return Entry(f"op {held.op}, {centre.on} {words}: {what}", held.op, path, centre.by, second=step == "and_centre")
 
 
 def centring(held: Held, centre: Centre, step: str, state: State, *, pair: str) -> Account:
@@ -183,9 +184,10 @@ def centring(held: Held, centre: Centre, step: str, state: State, *, pair: str) 
             missing = f"{path}.{'x' if centre.x is None else 'y'}"
             total += Account.of(Cause(entry.name, "undetermined", held.op, missing=missing))
         else:
-            total += Account.of(
-                Cause(entry.name, "rectangle", held.op, low=centre.x, high=centre.y, paths=(f"{path}.x", f"{path}.y"))
+            zero = Cause(
+                entry.name, "rectangle", held.op, low=centre.x, high=centre.y, paths=(f"{path}.x", f"{path}.y")
             )
+            total += held.turned(centre).to_part(Account.of(zero))
     if centre.runout is not None or (not device.xy and centre.x is None):
         towards = direction(held, centre.runout, f"{path}.runout", device)
         held.floor.directions[f"{held.op}/{step}"] = towards.why
@@ -346,7 +348,9 @@ def _stop(held: Held, stop: Stop | None, lean: Account) -> Account:
     away = -float(face.facing * held.sg)  # a spacer carries the part away from the stop, towards the tool or from it
     for i, spacer in enumerate(stop.spacers):
         entry = Entry(f"op {op}, {spacer.name} at the stop", op, f"{held.path('stop')}.spacers[{i + 1}].length", "")
-        error += size_error(spacer.length, entry)[1] * away
+        middle, one = size_error(spacer.length, entry)
+        drawn = spacer.length.nominal if spacer.length.nominal is not None else middle
+        error += one.plus_constant(middle - drawn) * away  # the stop was set for the size on paper
     return contact(held, stop, face, lean, held.path("stop")) - error * float(held.sg)
 
 

@@ -11,8 +11,19 @@ from setupcheck.jobfile.models import Deviation, Dimension
 from setupcheck.jobfile.reading import LoadedJob
 from setupcheck.jobfile.setups import Setup
 from setupcheck.ledger.causes import Cause
+from setupcheck.ledger.figures import Figure
 from setupcheck.quantities.book import Open
-from setupcheck.quantities.gates import FINE, guard_of, reading_for, room, rounded_down, span
+from setupcheck.quantities.gates import (
+    FINE,
+    guard_of,
+    origins,
+    reading_for,
+    room,
+    rounded_down,
+    span,
+    with_cause,
+    worst_excess,
+)
 from setupcheck.quantities.judged import Result
 from setupcheck.quantities.requirements import read_stack
 from setupcheck.quantities.route import walk
@@ -27,6 +38,7 @@ class Change:
     """One entry of the job file and the value that would do.
 
     unit "um" or "arcsec"; values in base units
+    also  other entries that speak of the same kept device and change with it
     """
 
     cause: Cause
@@ -34,6 +46,7 @@ class Change:
     now: float
     needed: float
     unit: str
+    also: tuple[str, ...] = ()
 
 
 @dataclass(frozen=True, slots=True)
@@ -46,8 +59,8 @@ class Stated:
     least: float = 0.0
 
 
-def stated(loaded: LoadedJob, path: str) -> Stated | None:
-    """The entry a cause rests on; None where it is not one number."""
+def _node(loaded: LoadedJob, path: str) -> object:
+    """What stands at a path of the typed job."""
     node: object = loaded.job
     for step in loaded.loc(path):
         if isinstance(node, dict):
@@ -56,6 +69,17 @@ def stated(loaded: LoadedJob, path: str) -> Stated | None:
             node = node[step] if step < len(node) else None
         else:
             node = getattr(node, {"from": "low", "to": "high"}.get(str(step), str(step)), None)
+    return node
+
+
+def _deviation(loaded: LoadedJob, path: str) -> Deviation | None:
+    node = _node(loaded, path)
+    return node if isinstance(node, Deviation) else None
+
+
+def stated(loaded: LoadedJob, path: str) -> Stated | None:
+    """The entry a cause rests on; None where it is not one number."""
+    node = _node(loaded, path)
     if isinstance(node, Deviation):
         value = node.measured if node.measured is not None else node.at_most
         return Stated(abs(value), "um", guard_of(node)) if value is not None else None
@@ -127,32 +151,62 @@ def _remedy(loaded: LoadedJob, result: Result, trials: dict[tuple[int, str], Swa
 
 
 def _cut_back(loaded: LoadedJob, result: Result, *, most: int) -> tuple[Change, ...]:
-    """The biggest causes cut back, at most so many; empty where they cannot bring the stack inside."""
-    over = -(result.margin or 0.0)
+    """The biggest causes cut back, at most so many; empty where they cannot bring the stack inside.
+
+    Each but the last is cut back as far as care goes (LEAST_KEPT), the last just as far as is needed.
+    """
+    stack, figure = result.stack, result.figure
     changes: list[Change] = []
-    for share in result.combined.shares:
-        cause, path = share.cause, share.cause.paths[0] if share.cause.paths else ""
-        found = stated(loaded, path) if path and cause.op is not None else None
-        if found is None or share.worst <= 0.0:
+    for cause in _by_weight(figure):
+        entries = [(path, stated(loaded, path)) for path in cause.paths]
+        said = entries[0][1] if entries else None
+        if cause.op is None or said is None or said.now <= 0.0:
             continue
-        if cause.mean:  # a known high spot: only by itself, and along the way it points
-            least, largest = span(result, cause, found.now, found.guard)
-            if not changes and least == 0.0 and 0.0 < (needed := _down(largest, found.unit)) < found.now:
-                return (Change(cause, path, found.now, needed, found.unit),)
+        least, largest = span(figure, cause, said.now, said.guard, low=stack.low, high=stack.high)
+        if least == 0.0 and largest < said.now and _down(largest, said.unit) > said.least:
+            return (*changes, *_changes(loaded, cause, entries, largest / said.now))
+        if len(changes) + 1 >= most or cause.mean or LEAST_KEPT * said.now <= said.least:
+            if most == 1:
+                return ()
             continue
-        keep = 1.0 - over / share.worst
-        if keep <= LEAST_KEPT:  # this one alone will not do: cut it back as far as care goes, and look at the next
-            keep = LEAST_KEPT if over >= share.worst else keep
-        needed = _down(reading_for(found.now, found.guard, keep), found.unit)
-        if needed <= found.least:
-            return ()
-        changes.append(Change(cause, path, found.now, needed, found.unit))
-        over -= share.worst * (1.0 - keep)
-        if over <= 1e-12:
-            return tuple(changes)
-        if len(changes) == most:
-            return ()
+        changes += _changes(loaded, cause, entries, LEAST_KEPT)
+        figure = with_cause(figure, cause, cause.scaled(LEAST_KEPT))
     return ()
+
+
+def _by_weight(figure: Figure) -> list[Cause]:
+    """The causes behind a figure, those first that take most with them when they go."""
+    full = worst_excess(figure, None, 0.0) if not figure.signed else worst_excess(figure, 0.0, 0.0)
+
+    def weight(cause: Cause) -> float:
+        gone = with_cause(figure, cause, cause.scaled(0.0))
+        return full - (worst_excess(gone, None, 0.0) if not figure.signed else worst_excess(gone, 0.0, 0.0))
+
+    return sorted(origins(figure), key=weight, reverse=True)
+
+
+def _changes(loaded: LoadedJob, cause: Cause, entries: list[tuple[str, Stated | None]], factor: float) -> list[Change]:
+    """One change for each entry the cause rests on (two for a zero along x and y), with the twins of a kept device."""
+    also = tuple(path for path in _twins(loaded, entries[0][0]) if cause.shared)
+    return [
+        Change(cause, path, said.now, _down(said.now * factor, said.unit), said.unit, also)
+        for path, said in entries
+        if said is not None
+    ]
+
+
+def _twins(loaded: LoadedJob, path: str) -> Iterator[str]:
+    """The other entries that speak of the same kept device with the same value, in the same plane."""
+    mine = _deviation(loaded, path)
+    step = path.split(".")[-2]
+    if mine is None:
+        return
+    for setup in loaded.job.setups:
+        entry = getattr(setup.hold, step, None) if setup.hold is not None else None
+        key = path.rpartition(".")[2]
+        other = f"setups.{setup.op}.hold.{step}.{key}"
+        if other != path and entry is not None and getattr(entry, key, None) == mine:
+            yield other
 
 
 def _down(value: float, unit: str) -> float:

@@ -317,10 +317,13 @@ def stock_left(floor: Floor, key: str) -> Built | Open:
         depth = after.facing * (before.z - after.z)
         axial = (before.axial - after.axial) * float(after.facing)
         lean = before.lean - after.lean
-        radius = max((s.diameter or 0.0) / 2.0 for s in (before, after))
-        if missing := axial.undetermined() + lean.undetermined():
+        sizes = [s.diameter for s in (before, after) if s.diameter]
+        missing = axial.undetermined() + lean.undetermined()
+        if lean.terms and not sizes:
+            missing += (f"parts.{after.part}.surfaces.{after.name}.diameter",)
+        if missing:
             return Open(tuple(dict.fromkeys(missing)))
-        return Built(figures.FaceStock(axial.plus_constant(depth), lean, radius), 0.0)
+        return Built(figures.FaceStock(axial.plus_constant(depth), lean, max(sizes, default=0.0) / 2.0), 0.0)
     if before.diameter is None or after.diameter is None:
         return Open((f"setups.{after.op}.cut.{after.name}.to",))
     depth = (before.diameter - after.diameter) / 2.0 * (-1.0 if after.kind == "bore" else 1.0)

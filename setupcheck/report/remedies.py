@@ -19,7 +19,7 @@ STACK_RULES = ("STACK-001", "STACK-002")
 
 def remedy_in_words(found: Review, finding: Finding) -> str:
     """What to do about a finding; of an open one, what to fill."""
-    if finding.verdict == "open":
+    if finding.verdict in ("open", "pass"):
         return ""
     if finding.rule in STACK_RULES and finding.key in found.remedies:
         return _worked_out(found.remedies[finding.key], inches=found.book.inches) or finding.remedy
@@ -40,7 +40,7 @@ def _worked_out(remedy: Remedy, *, inches: bool) -> str:
         where, what = cause_in_parts(change.cause.key)
         told.append(
             f"{where + ': ' if where else ''}bring the {what} from {show(change.now, unit, digits)} down to "
-            f"{show(change.needed, unit, digits)} ({change.path})"
+            f"{show(change.needed, unit, digits)} ({', '.join((change.path, *change.also))})"
         )
     text = "; and ".join(told)
     return text[:1].upper() + text[1:] + "." if text else ""

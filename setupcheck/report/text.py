@@ -186,7 +186,7 @@ def _requirement(found: Review, scope: Scope, everything: bool, tightest: bool) 
     if causes:
         line += f"; biggest: {causes[0]}"
     elif not result.combined.base:
-        line += "; cut in one holding, so nothing adds"
+        line += "; nothing adds, both share all their errors"
     if tightest:
         line += " (the tightest)"
     yield from wrap(line, first="  ", rest="      ")

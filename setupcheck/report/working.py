@@ -151,7 +151,7 @@ def _made_of(loaded: LoadedJob, book: Book, scope: Scope) -> Iterator[str]:
 def _causes(loaded: LoadedJob, book: Book, shares: Sequence[Share], base: float, unit: str) -> Iterator[str]:
     """Every cause with what it does to the figure, what is stated of it, and the line where."""
     fine, digits = finer(unit, inches=book.inches)
-    yield "  causes, biggest first:" if shares else "  no cause reaches it: cut in one holding"
+    yield "  causes, biggest first:" if shares else "  no cause reaches it: both surfaces share all their errors"
     for share in shares:
         yield from wrap(
             f"{cause_in_words(share.cause.key)}: gives {show(share.worst, fine, digits)}, {share.share * 100:.0f} % of "
@@ -160,7 +160,9 @@ def _causes(loaded: LoadedJob, book: Book, shares: Sequence[Share], base: float,
             rest="      ",
         )
     if base:
-        yield from wrap(f"known part without any error: {show(base, fine, digits)}", first="    ", rest="      ")
+        whole = ("in", 5) if book.inches else ("mm", 4)
+        said = show(base, *whole) if unit in ("mm", "um") and abs(base) > 1.0 else show(base, fine, digits)
+        yield from wrap(f"known part without any error: {said}", first="    ", rest="      ")
 
 
 def _where(loaded: LoadedJob, cause: Cause) -> str:

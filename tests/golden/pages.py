@@ -23,7 +23,7 @@ SHIMMED = WHEEL.replace(
 MISTAKES = (
     WHEEL.replace("clearance: [2 um, 8 um]", "clearance: [2 um, 8,5 um]")
     .replace("centre: {on: rim, by: soft-jaws, at: 12", "centre: {on: rimm, by: soft-jaws, at: 12")
-    .replace("uncertainty: 2', leans: nose-up", "uncertainty: 2 um, leans: nose-up")
+    .replace("uncertainty: 2', leans: nose-down", "uncertainty: 2 um, leans: nose-down")
 )
 
 

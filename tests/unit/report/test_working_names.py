@@ -141,8 +141,8 @@ def test_a_number_without_a_unit_says_what_it_counts() -> None:
     assert "circle: divide.circle = 18 holes" in found
 
 
-def test_surfaces_cut_in_one_holding_say_so() -> None:
-    assert "no cause reaches it: cut in one holding" in working("require[6]", GEAR)
+def test_surfaces_that_share_all_errors_say_so() -> None:
+    assert "no cause reaches it: both surfaces share all their errors" in working("require[6]", GEAR)
 
 
 def test_what_is_missing_is_named_by_its_key() -> None:

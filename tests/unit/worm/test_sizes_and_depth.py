@@ -1,0 +1,140 @@
+"""Laws of the sizes, of wires, depth and passes; what is refused and how."""
+
+from __future__ import annotations
+
+import math
+
+import pytest
+from hypothesis import given
+from hypothesis import strategies as st
+
+from setupcheck.worm import cutter, geometry
+
+WORM = {"starts": 1, "axial_module": 2.5, "reference_diameter": 30.0, "pressure_angle": math.radians(20.0)}
+
+
+@given(st.floats(3.0, 4.8), st.floats(4.0, 4.4), st.integers(1, 3))
+def test_the_thickness_comes_back_from_the_size_over_wires(thickness: float, wire: float, starts: int) -> None:
+    worm = {**WORM, "starts": starts}
+    size = geometry.over_wires(thread_thickness=thickness, wire=wire, **worm).size  # type: ignore[arg-type]
+    back = geometry.thickness_over_wires(size=size, wire=wire, **worm)  # type: ignore[arg-type]
+    assert thickness == pytest.approx(back, abs=1e-9)
+
+
+@given(st.floats(-0.9, 0.9), st.integers(20, 200))
+def test_the_shift_comes_back_from_the_centre_distance(shift: float, teeth: int) -> None:
+    at = {"axial_module": 1.5, "reference_diameter": 24.0}
+    distance = geometry.centre_distance(wheel_teeth=teeth, shift=shift, **at)
+    assert shift == pytest.approx(geometry.profile_shift(distance=distance, wheel_teeth=teeth, **at), abs=1e-9)
+
+
+def test_a_centre_distance_that_does_not_close_is_refused() -> None:
+    with pytest.raises(ValueError, match=r"68 mm does not close: .* give 65 mm, and a shift of \+1.20 modules"):
+        geometry.profile_shift(distance=68.0, axial_module=2.5, reference_diameter=30.0, wheel_teeth=40)
+
+
+def test_the_slip_of_the_wrong_diameter_is_named() -> None:
+    of = {"reference": 28.0, "tip": 32.0, "root": 23.0}
+    near = math.radians(2.0 / 60.0)
+    set_angle = math.radians(3.0 + 34.6 / 60.0)
+    assert "tip" == geometry.whose_lead_angle(set_angle, of, starts=1, axial_module=2.0, within=near)
+    assert geometry.whose_lead_angle(math.radians(3.8), of, starts=1, axial_module=2.0, within=near) is None
+    assert geometry.whose_lead_angle(set_angle, {}, starts=1, axial_module=2.0, within=near) is None
+    assert 32.0 == pytest.approx(geometry.diameter_at_lead_angle(set_angle, starts=1, axial_module=2.0), abs=0.01)
+
+
+def test_the_pressure_angles_turn_into_each_other() -> None:
+    g = math.radians(12.0)
+    back = geometry.axial_pressure_angle(geometry.normal_pressure_angle(0.35, g), g)
+    assert 0.35 == pytest.approx(back)
+
+
+@pytest.mark.parametrize(
+    ("change", "says"),
+    [
+        ({"wire": 3.0, "tip_diameter": 35.0}, "does not stand proud of the tip diameter 35 mm"),
+        ({"wire": 4.16, "root_diameter": 28.0}, "rests on the root diameter 28 mm"),
+        ({"wire": math.nan}, "wire must be above zero"),
+        ({"wire": 4.16, "thread_thickness": 8.0}, "groove width must be above zero"),
+        ({"wire": 4.16, "pressure_angle": 20.0}, "pressure angle must lie between 0 and 45 deg"),
+        ({"wire": 60.0}, "does not touch the flanks|finds no seat"),
+    ],
+)
+def test_wires_that_do_not_fit_are_refused(change: dict[str, float], says: str) -> None:
+    given_sizes = {**WORM, "thread_thickness": math.pi * 1.25, **change}
+    with pytest.raises(ValueError, match=says):
+        geometry.over_wires(**given_sizes)  # type: ignore[arg-type]
+
+
+def test_a_size_over_wires_of_another_pitch_is_refused() -> None:
+    with pytest.raises(ValueError, match="fits no thread of"):
+        geometry.thickness_over_wires(size=52.0, wire=4.16, **WORM)  # type: ignore[arg-type]
+
+
+def test_edge_contact_has_no_contact_share() -> None:
+    with pytest.raises(ValueError, match="edge contact: take a larger cutter"):
+        cutter.contact_share(0.006, crowning=-1e-3, pressure_angle=0.35, lead_angle=0.08, face_width=16.0)
+    with pytest.raises(ValueError, match="edge contact"):
+        cutter.ridge_slope(crowning=0.0, twist=7e-3)
+
+
+def test_an_undercut_wheel_has_no_insert() -> None:
+    with pytest.raises(ValueError, match=r"29\.9 teeth are needed"):
+        cutter.insert_widths(
+            [0.0],
+            axial_module=2.5,
+            wheel_teeth=28,
+            centre_distance=50.0,
+            worm_tip_diameter=35.0,
+            clearance=0.5,
+            pressure_angle=math.radians(15.0),
+            gap_arc=math.pi * 1.25,
+            tilt=0.08,
+            cutter_radius=30.0,
+        )
+
+
+def test_errors_grow_as_the_cutter_comes_down_to_its_floor() -> None:
+    pair = {
+        "pitch_diameter": 30.0,
+        "wheel_diameter": 100.0,
+        "pressure_angle": math.radians(20.0),
+        "lead_angle": math.atan(1.0 / 12.0),
+        "gap_arc": math.pi * 1.25,
+    }
+    grown = [
+        cutter.profile_error_of_tilt(
+            1e-3, crowning=cutter.crowning(oversize=d, **pair), twist=cutter.twist(oversize=d, **pair)
+        )
+        for d in (2.1, 3.0, 6.0, 12.0, 32.0, 100.0)
+    ]
+    assert sorted(grown, reverse=True) == grown
+    assert grown[0] > 20.0 * grown[3]
+
+
+@pytest.mark.parametrize(("throat", "radius", "width"), [(12.5, 29.75, 10.0), (12.0, 16.5, 11.6), (10.5, 20.0, 15.0)])
+def test_a_turning_cutter_touches_the_corners_of_a_throat_first(throat: float, radius: float, width: float) -> None:
+    # brute force: lowest cutter centre that keeps its circle outside the hollow, against its height over the bottom
+    zs = [width / 2.0 * k / 2000.0 for k in range(2001)]
+    centre = max(throat - math.sqrt(throat**2 - z * z) + math.sqrt(radius**2 - z * z) for z in zs)
+    early = cutter.early_touch(throat_radius=throat, cutter_radius=radius, throat_width=width)
+    assert centre - radius == pytest.approx(early, abs=1e-9)
+    assert 0.0 == cutter.early_touch(throat_radius=throat, cutter_radius=throat - 1.0, throat_width=width)
+
+
+@pytest.mark.parametrize(
+    ("passes", "left", "adds_up"),
+    [([2.0, 1.0, 0.3], 0.0, True), ([2.0, 1.0, 0.2], 0.1, False), ([2.0, 1.0, 0.305], -0.005, True)],
+)
+def test_passes_add_up_to_the_depth(passes: list[float], left: float, adds_up: bool) -> None:
+    assert left == pytest.approx(cutter.left_by_passes(3.3, passes), abs=1e-12)
+    assert adds_up == cutter.passes_add_up(3.3, passes, readout_step=0.01)
+
+
+def test_a_list_of_passes_without_a_pass_or_with_a_lift_is_refused() -> None:
+    with pytest.raises(ValueError, match="no pass"):
+        cutter.left_by_passes(3.3, [])
+    with pytest.raises(ValueError, match="pass 2 must be above zero"):
+        cutter.left_by_passes(3.3, [3.5, -0.2])
+    with pytest.raises(ValueError, match="not above the root"):
+        cutter.depth_to_feed(touched_diameter=114.0, root_diameter=115.0)
