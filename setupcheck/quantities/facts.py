@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import re
 from dataclasses import dataclass
 
 from setupcheck.jobfile.names import Ref
@@ -12,24 +13,13 @@ from setupcheck.quantities.route import machine_of
 from setupcheck.quantities.scopes import CutEntry, HoldEntry
 from setupcheck.quantities.shop import Floor
 
-FAMILIES = {
-    "cu": "copper-alloy",
-    "bronze": "copper-alloy",
-    "brass": "copper-alloy",
-    "gunmetal": "copper-alloy",
-    "gg": "cast-iron",
-    "gjl": "cast-iron",
-    "gjs": "cast-iron",
-    "cast-iron": "cast-iron",
-    "grey-iron": "cast-iron",
-    "al": "aluminium",
-    "en aw": "aluminium",
-    "steel": "steel",
-    "c": "steel",
-    "s": "steel",
-    "x": "steel",
-}
-"""First letters of material names and what they are. Source: common designations (EN), from memory."""
+FAMILIES = (
+    ("copper-alloy", r"cu|cc\d|c[1-9]\d{4}|bronze|brass|gunmetal|rg\d|sae 6\d"),
+    ("cast-iron", r"gg|gj|jl|jm|js|cast.?iron|gr[ea]y.?iron"),
+    ("aluminium", r"al|aw|[2-7]\d{3}(-t\d|$)"),
+    ("steel", r"\d|steel|c\d\d?\b|s\d{3}|x\d"),
+)
+"""How names of materials begin, and what they are: EN, UNS and trade names. Source: common designations, from memory."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -45,16 +35,11 @@ Fact = str | int | float | bool | UnknownFact | None
 def material_family(material: str) -> str:
     """copper-alloy, steel, cast-iron, aluminium or other, from the name of a material.
 
-    >>> material_family("CuSn12-C"), material_family("42CrMo4"), material_family("EN-GJL-250")
-    ('copper-alloy', 'steel', 'cast-iron')
+    >>> [material_family(name) for name in ("CuSn12-C", "C93200", "CC483K", "42CrMo4", "C45", "EN-GJL-250", "6082-T6")]
+    ['copper-alloy', 'copper-alloy', 'copper-alloy', 'steel', 'steel', 'cast-iron', 'aluminium']
     """
-    name = material.lower().removeprefix("en-")
-    if name[:1].isdigit():
-        return "steel"
-    for start, family in FAMILIES.items():
-        if name.startswith(start) and (len(start) > 1 or name[1:2].isdigit()):
-            return family
-    return "other"
+    name = re.sub(r"^en[- ]?", "", material.strip().lower())
+    return next((family for family, begins in FAMILIES if re.match(begins, name)), "other")
 
 
 def facts_of(floor: Floor, scope: Scope, name: str) -> Fact:

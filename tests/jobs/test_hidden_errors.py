@@ -264,3 +264,57 @@ def test_a_chip_under_one_side_leans_the_part_and_lifts_its_middle_one_way_only(
     assert 14.0 == pytest.approx(worst(found, "squareness"))
     length = next(r.combined.worst for k, r in found.results.items() if k.startswith("length"))
     assert (9.986, 10.008) == (pytest.approx(length.low), pytest.approx(length.high))
+
+
+def test_stock_on_a_face_without_a_diameter_is_open_while_the_face_can_lean() -> None:
+    text = changed(
+        WHEEL, "back:     {kind: face, at: 0, facing: -z, diameter: 100}", "back:     {kind: face, at: 0, facing: -z}"
+    )
+    opened = {
+        m for f in judged(text).evaluation.findings if f.rule == "ALLOW-001" and f.verdict == "open" for m in f.missing
+    }
+    assert opened == {"parts.wheel.surfaces.back.diameter"}
+
+
+def test_one_zero_error_moves_and_turns_a_pattern_together_and_counts_once() -> None:
+    # off by c, a slot at r 80 clocked on a hole at r 60, both in one direction, stands off by c - i (80/60) Im c:
+    # c_x - i c_y / 3, at most |c|: 2 x hypot(10, 5) = 22.36 um
+    text = PLATE_ON_TABLE
+    assert 22.36 == pytest.approx(worst(judged(text), "position"), abs=0.01)
+
+
+PLATE_ON_TABLE = """
+setupcheck: 1
+title: A slot clocked on a hole, invented
+units: mm
+parts:
+  plate: {surfaces: {bore: {kind: bore, diameter: 40, from: 0, to: 20, made: stock}, back: {kind: face, at: 0, facing: -z, diameter: 200, made: stock},
+                     hole: {kind: holes, on_circle: 120, at: 20, made: stock}, slot: {kind: slot, on_circle: 160, at: 20}},
+          given: [{of: back, about: bore, face_runout: 0 um, across: 150}, {of: hole, about: bore, runout: 0 um}]}
+machines: {table-A: {kind: rotary-table, worm_ratio: 90, axis_runout: 0 um}}
+setups:
+  - {op: 10, machine: table-A, looks_at_tool: +z, hold: {centre: {on: bore, by: edge-finder, x: 10 um, y: 5 um}, square: {on: back,
+     face_runout: 0 um, across: 150}, clock: {on: hole, error: 0 um}}, cut: {slot: {spindle_to_axis: {x: 80 ±0.000, y: 0 ±0.000}}}}
+require: [{what: position, of: plate.slot, about: plate.bore, clock: plate.hole, at_most: 100 um}]
+"""
+
+
+def test_one_kept_device_in_two_planes_errs_in_each_by_itself() -> None:
+    one = GEAR.replace("device: mandrel-20-far", "device: mandrel-20")
+    for text in (GEAR, one):
+        leaning = text + "  - {what: face-run-out, of: gear.front, about: gear.outside, across: 60, at_most: 50 um}\n"
+        assert 16.875 == pytest.approx(
+            1000.0 * judged(leaning).results["face-run-out.gear-front.gear-outside"].combined.worst.high
+        )
+
+
+def test_a_spacer_at_a_stop_counts_with_its_size_as_found() -> None:
+    text = changed(
+        FACED,
+        "stop: {on: front, error: 5 um}",
+        "stop: {on: front, error: 5 um, spacers: [{name: ring, length: "
+        "{nominal: 5, measured: 5.010 mm, uncertainty: 0 um}}]}",
+    )
+    length = next(r.combined.worst for k, r in judged(text).results.items() if k.startswith("length"))
+    # the part stands 10 um nearer the tool than the stop was set for, so it comes out that much thinner
+    assert (9.982, 9.998) == (pytest.approx(length.low), pytest.approx(length.high))
