@@ -191,7 +191,7 @@ class Head(Shop):
 
     tilt: Angle
     uncertainty: AngleBound | None = None
-    leans: Literal["nose-up", "nose-down", "left", "right"] | None = None
+    leans: Literal["nose-up", "nose-down", "left", "right", "front", "back"] | None = None
     by: Literal["scale", "vernier", "sine-bar", "readout"] | None = None
     sine_bar: Size | None = None
     blocks: Dim | None = None

@@ -5,6 +5,7 @@ from __future__ import annotations
 from setupcheck.quantities import holds, judged
 from setupcheck.quantities.book import Quantity
 from setupcheck.quantities.division import DIVIDE
+from setupcheck.quantities.tilting import TILT
 
 ROUTE = (
     Quantity("route.floor", "job", "", 0, judged.floor, {"floor": ":"}, "every surface with what it inherits"),
@@ -231,4 +232,4 @@ PLACE = (
     ),
 )
 
-TABLES: tuple[Quantity, ...] = (*ROUTE, *STACK, *HOLD, *ALLOW, *DIVIDE, *PLACE)
+TABLES: tuple[Quantity, ...] = (*ROUTE, *STACK, *HOLD, *ALLOW, *DIVIDE, *TILT, *PLACE)

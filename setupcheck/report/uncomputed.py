@@ -11,6 +11,7 @@ from pydantic import BaseModel
 from setupcheck.jobfile.models import Flat, Part, Pattern, Round, Throat
 from setupcheck.jobfile.reading import LoadedJob
 from setupcheck.jobfile.setups import Head, Setup
+from setupcheck.quantities.tilting import cuts_the_wheel
 from setupcheck.report.written import written
 
 NOT_LOOKED_AT: Mapping[str, Mapping[str, str]] = {
@@ -40,7 +41,7 @@ NOT_LOOKED_AT: Mapping[str, Mapping[str, str]] = {
     },
     "Machine": {"nose_points": "nose points {said}", "cutter_stands": "cutter stands {said}", "axis": "axis {said}"},
     "Head": {
-        "tilt": "tilt {said} (not compared with the worm's lead angle)",
+        "tilt": "tilt {said} (compared with the worm only where its wheel is cut gap by gap)",
         "uncertainty": "uncertainty of the tilt {said}",
         "leans": "leans {said}",
         "by": "tilt set by {said}",
@@ -110,8 +111,11 @@ def _all(loaded: LoadedJob) -> Iterator[Uncomputed]:
             yield from _entries(loaded, record, path, path)
     for name, cutter in job.cutters.items():
         yield from _entries(loaded, cutter, f"cutters.{name}", f"cutter {name}")
+    leaning = {s.machine for s in job.setups if cuts_the_wheel(loaded, s)}
     for name, machine in job.machines.items():
-        yield from _entries(loaded, machine, f"machines.{name}", name)
+        for item in _entries(loaded, machine, f"machines.{name}", name):
+            if name not in leaning or not item.at.endswith((".nose_points", ".cutter_stands")):
+                yield item
     for setup in job.setups:
         yield from _setup(loaded, setup)
     for number, asked in enumerate(job.require, 1):
@@ -162,9 +166,14 @@ def _setup(loaded: LoadedJob, setup: Setup) -> Iterator[Uncomputed]:
 
 
 def _head(loaded: LoadedJob, head: Head, path: str, owner: str) -> Iterator[Uncomputed]:
-    """A head that stands straight has nothing to compare; what the tilt does to a mid-plane found before it is not told."""
+    """What stands of a head beside the tilt that is compared with the worm's lead angle, where a worm wheel is cut.
+
+    A head that stands straight has nothing to compare; what the tilt does to a mid-plane found before it is not told.
+    """
+    setup = next(s for s in loaded.job.setups if s.head is head)
+    compared = (".tilt", ".uncertainty", ".leans") if cuts_the_wheel(loaded, setup) else ()
     for item in _entries(loaded, head, path, owner):
-        if head.tilt != 0.0 or not item.at.endswith(".tilt"):
+        if not item.at.endswith(compared) and (head.tilt != 0.0 or not item.at.endswith(".tilt")):
             yield item
     if head.mid_plane is None:
         return

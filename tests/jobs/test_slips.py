@@ -285,3 +285,46 @@ def test_the_remedy_of_the_classic_slip_brings_the_stack_inside_when_typed_in(sl
         margin = judged(better).results[key].margin
         assert margin is not None
         assert margin >= -1e-6, key
+
+
+TILTED = "head:   {tilt: 3deg 34' 35\", uncertainty: 2', leans: nose-down,"
+
+
+@pytest.mark.parametrize(
+    ("becomes", "rules"),
+    [
+        pytest.param(
+            "head:   {tilt: 3deg 10' 48\", uncertainty: 2', leans: nose-down,",
+            {"TILT-001", "TILT-002"},
+            id="angle of the tip",
+        ),
+        pytest.param("head:   {tilt: 3deg 34' 35\", uncertainty: 2', leans: nose-up,", {"TILT-003"}, id="wrong side"),
+        pytest.param("head:   {tilt: 3deg 50', uncertainty: 2', leans: nose-down,", {"TILT-001"}, id="angle misread"),
+    ],
+)
+def test_a_head_leaned_wrongly_is_caught_and_the_drawn_one_is_not(becomes: str, rules: set[str]) -> None:
+    text = TEXTS[WHEEL]
+    assert text.count(TILTED) == 1
+    failed = {f.rule for f in judged(text.replace(TILTED, becomes)).evaluation.findings if f.verdict == "fail"}
+    assert failed == rules
+    assert not [f for f in judged(text).evaluation.findings if f.rule.startswith("TILT") and f.verdict != "pass"]
+
+
+@pytest.mark.parametrize(
+    ("gone", "key"),
+    [
+        ("hand: right\n", "worm.hand"),
+        ("reference_diameter: 24\n", "worm.reference_diameter"),
+        ("nose_points: left, ", "machines.dividing-head-B.nose_points"),
+        (" leans: nose-down,", "setups.40.head.leans"),
+        (" uncertainty: 2',", "setups.40.head.uncertainty"),
+    ],
+)
+def test_a_tilt_that_cannot_be_told_is_open_with_the_key_to_fill(gone: str, key: str) -> None:
+    text = TEXTS[WHEEL]
+    assert gone in text
+    found = judged(text.replace(gone, "\n" if gone.endswith("\n") else "", 1))
+    opened = {
+        m for f in found.evaluation.findings if f.rule.startswith("TILT") and f.verdict == "open" for m in f.missing
+    }
+    assert key in opened

@@ -118,6 +118,10 @@ QUANTITIES: Mapping[str, FakeQuantity] = {
         FakeQuantity("divide.setting_error", "setup", "arcsec", 2),
         FakeQuantity("divide.error_stated", "setup", "", 0),
         FakeQuantity("divide.error_kind", "setup", "", 0),
+        FakeQuantity("tilt.error", "setup", "arcmin", 1),
+        FakeQuantity("tilt.allowed", "setup", "arcmin", 1),
+        FakeQuantity("tilt.belongs_to", "setup", "", 0),
+        FakeQuantity("tilt.lean", "setup", "", 0),
         FakeQuantity("place.nominal_gap", "place", "um", 1),
     )
 }

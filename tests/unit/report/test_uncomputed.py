@@ -88,11 +88,13 @@ def test_a_joint_lists_its_heat_its_load_and_its_service_with_their_lines() -> N
     ) in told(WHEEL)
 
 
-def test_a_tilted_head_says_that_its_angle_was_not_compared() -> None:
+def test_a_tilt_that_is_compared_with_the_worm_is_not_told_and_any_other_is() -> None:
     tilt = next(line for line in told(WHEEL) if line.startswith("op 40"))
-    assert "tilt 3deg 34' 35\" (not compared with the worm's lead angle), uncertainty of the tilt 2'" in tilt
+    assert "tilt" not in tilt
     assert "depth 3.3 mm of teeth" in tilt
     assert "passes 2 mm, 1 mm, 0.3 mm of teeth" in tilt
+    hobbed = changed(WHEEL, ("fly: {kind: single-point", "fly: {kind: hob"))
+    assert "tilt 3deg 34' 35\" (compared with the worm only where its wheel is cut gap by gap)" in " ".join(told(hobbed))
 
 
 def test_a_head_that_stands_straight_has_no_tilt_to_compare() -> None:
