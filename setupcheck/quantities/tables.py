@@ -5,6 +5,7 @@ from __future__ import annotations
 from setupcheck.quantities import holds, judged
 from setupcheck.quantities.book import Quantity
 from setupcheck.quantities.division import DIVIDE
+from setupcheck.quantities.joining import JOINING
 from setupcheck.quantities.tilting import TILT
 
 ROUTE = (
@@ -232,4 +233,4 @@ PLACE = (
     ),
 )
 
-TABLES: tuple[Quantity, ...] = (*ROUTE, *STACK, *HOLD, *ALLOW, *DIVIDE, *TILT, *PLACE)
+TABLES: tuple[Quantity, ...] = (*ROUTE, *STACK, *HOLD, *ALLOW, *DIVIDE, *TILT, *JOINING, *PLACE)

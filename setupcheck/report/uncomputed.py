@@ -10,7 +10,7 @@ from pydantic import BaseModel
 
 from setupcheck.jobfile.models import Flat, Part, Pattern, Round, Throat
 from setupcheck.jobfile.reading import LoadedJob
-from setupcheck.jobfile.setups import Head, Setup
+from setupcheck.jobfile.setups import Head, Join, Setup
 from setupcheck.quantities.tilting import cuts_the_wheel
 from setupcheck.report.written import written
 
@@ -19,7 +19,6 @@ NOT_LOOKED_AT: Mapping[str, Mapping[str, str]] = {
     "Flat": {"roughness": "roughness {said} of {of}"},
     "Throat": {"radius": "radius {said} of {of}"},
     "Worm": {
-        "tip_diameter": "tip diameter {said}",
         "profile": "profile {said}",
         "thread_thickness": "thread thickness {said}",
         "end_float": "end float {said}",
@@ -102,7 +101,8 @@ def in_lines(found: Sequence[Uncomputed]) -> list[str]:
 
 def _all(loaded: LoadedJob) -> Iterator[Uncomputed]:
     job = loaded.job
-    if "room" in job.model_fields_set:
+    shrunk = any(s.join is not None and s.join.by == "shrink" for s in job.setups)
+    if "room" in job.model_fields_set and not shrunk:  # a shaft that is not chilled has the room's temperature
         yield _one(loaded, "room", "job", "room temperature {said}")
     for name, part in job.parts.items():
         yield from _part(loaded, name, part)
@@ -144,7 +144,7 @@ def _part(loaded: LoadedJob, name: str, part: Part) -> Iterator[Uncomputed]:
         if isinstance(node, Round):
             size = node.diameter
             limited = size.lower is not None or size.upper is not None or size.uncertainty is not None
-            if size.fit is not None or limited:
+            if (size.fit is not None or limited) and (name, surface) not in _fitted(loaded):
                 words = "size class {said} of {of}" if size.fit is not None else "size limits {said} of {of}"
                 yield _one(loaded, f"{path}.diameter", name, words, surface)
         if isinstance(node, Round | Flat | Throat):
@@ -162,7 +162,24 @@ def _setup(loaded: LoadedJob, setup: Setup) -> Iterator[Uncomputed]:
     for surface, cut in setup.cut.items():
         yield from _entries(loaded, cut, f"{path}.cut.{surface}", owner, surface)
     if setup.join is not None:
-        yield from _entries(loaded, setup.join, f"{path}.join", owner)
+        yield from _join(loaded, setup.join, f"{path}.join", owner)
+
+
+def _join(loaded: LoadedJob, join: Join, path: str, owner: str) -> Iterator[Uncomputed]:
+    """Of the heat of a shrink fit only what the sum of heat and need leaves out; of any other joint all of it."""
+    for item in _entries(loaded, join, path, owner):
+        if join.by != "shrink" or not item.at.endswith(".heat"):
+            yield item
+        elif join.heat is not None and join.heat.carry is not None:
+            yield _one(
+                loaded, f"{path}.heat.carry", owner, "carry time {said} (what it costs in heat is not taken off)"
+            )
+
+
+def _fitted(loaded: LoadedJob) -> set[tuple[str, str]]:
+    """Surfaces whose size limits are held against each other, because they are put together."""
+    refs = [loaded.ref(text) for s in loaded.job.setups if s.join is not None for text in (s.join.outer, s.join.inner)]
+    return {(ref.part, ref.surface) for ref in refs}
 
 
 def _head(loaded: LoadedJob, head: Head, path: str, owner: str) -> Iterator[Uncomputed]:

@@ -8,6 +8,7 @@ import pytest
 
 from setupcheck.flow import Review, review
 from setupcheck.jobfile.reading import read_job_text
+from setupcheck.quantities.book import Known
 from setupcheck.shipped import shipped
 
 TEXTS = {
@@ -328,3 +329,57 @@ def test_a_tilt_that_cannot_be_told_is_open_with_the_key_to_fill(gone: str, key:
         m for f in found.evaluation.findings if f.rule.startswith("TILT") and f.verdict == "open" for m in f.missing
     }
     assert key in opened
+
+
+@pytest.mark.parametrize(
+    ("good", "bad", "rules"),
+    [
+        pytest.param("hub: 180 degC", "hub: 130 degC", {"HEAT-001"}, id="heated for the nominal interference"),
+        pytest.param("hub: 180 degC", "hub: 200 degC", {"HEAT-002"}, id="oven error forgotten at the cap"),
+        pytest.param(
+            "diameter: 32.041 ±0.003", "diameter: 32.010 ±0.003", {"FIT-001"}, id="journal too small for the class"
+        ),
+        pytest.param(
+            "diameter: 32.041 ±0.003", "diameter: 31.990 ±0.003", {"FIT-001"}, id="a clearance, not an interference"
+        ),
+    ],
+)
+def test_a_joint_that_will_not_go_on_or_not_hold_is_caught(good: str, bad: str, rules: set[str]) -> None:
+    text = TEXTS[WHEEL]
+    assert text.count(good) == 1
+    failed = {f.rule for f in judged(text.replace(good, bad)).evaluation.findings if f.verdict == "fail"}
+    assert failed == rules
+    assert not [f for f in judged(text).evaluation.findings if f.rule[:4] in ("FIT-", "HEAT") and f.verdict != "pass"]
+
+
+@pytest.mark.parametrize(
+    ("gone", "instead", "key"),
+    [
+        ("hub: 180 degC, ", "", "setups.70.join.heat.hub"),
+        (" oven_error: 10 degC,", "", "setups.70.join.heat.oven_error"),
+        ("material: CuSn12-C\n", "\n", "parts.wheel.material"),
+        ("material: CuSn12-C\n", "material: unobtainium\n", "parts.wheel.material"),
+        ("diameter: 32 H6,", "diameter: 32,", "parts.wheel.surfaces.bore.diameter"),
+    ],
+)
+def test_a_joint_that_cannot_be_told_is_open_with_the_key_to_fill(gone: str, instead: str, key: str) -> None:
+    text = TEXTS[WHEEL]
+    assert gone in text
+    found = judged(text.replace(gone, instead, 1))
+    opened = {
+        m
+        for f in found.evaluation.findings
+        if f.rule[:4] in ("FIT-", "HEAT") and f.verdict == "open"
+        for m in f.missing
+    }
+    assert key in opened
+
+
+def test_the_heat_of_the_wheel_is_the_sum_on_paper() -> None:
+    # 32.044 over 32.000: 44 um; usual play 32 um; both sizes at 20 degC, room at 20: 76 um / (32 mm x 17.0e-6 /K) = 139.7 K
+    # expansion of CuSn12 low end 17.0e-6 /K as listed in rules/data/materials.yaml
+    found = judged(TEXTS[WHEEL])
+    scope = found.book.instances("join")[0]
+    needed = found.book.get("heat.needed", scope)
+    assert isinstance(needed, Known)
+    assert 159.7 == pytest.approx(float(str(needed.value)), abs=0.1)

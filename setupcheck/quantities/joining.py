@@ -1,0 +1,189 @@
+"""Does the hub go on hot, and is it an interference at all? Sizes and heat of each joint. Lengths mm, temperatures degC."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+from setupcheck.jobfile.models import Dimension, Round
+from setupcheck.jobfile.names import Ref
+from setupcheck.jobfile.setups import Join
+from setupcheck.quantities.book import Open, OutOfRange, Quantity
+from setupcheck.quantities.shop import Floor
+
+
+@dataclass(frozen=True, slots=True)
+class JointSizes:
+    """Smallest and largest diameters of both surfaces of a joint [mm], and the nominal one."""
+
+    nominal: float
+    bore_low: float
+    bore_high: float
+    journal_low: float
+    journal_high: float
+
+
+def limits_of(given: Dimension, path: str) -> tuple[float, float] | Open:
+    """Smallest and largest size [mm]: as measured, by its limits, or by its ISO 286 class.
+
+    Source: the job file; ISO 286 tables in rules/data (each row with its own source).
+    """
+    if given.measured is not None:
+        if given.uncertainty is None:
+            return Open((f"{path}.uncertainty",))
+        return given.measured - given.uncertainty, given.measured + given.uncertainty
+    assert given.nominal is not None
+    if given.lower is not None or given.upper is not None:
+        return given.nominal + (given.lower or 0.0), given.nominal + (given.upper or 0.0)
+    if given.fit is None:
+        return Open((path,), f"{path} has no limits: write them, as in 32.041 ±0.003, or a class, as in 32 H6")
+    from setupcheck.quantities.fit_tables import limits
+
+    found = limits(given.nominal, given.fit)
+    return given.nominal + found.lower, given.nominal + found.upper
+
+
+def sizes(floor: Floor, join: Join) -> JointSizes | Open | None:
+    """Limits of bore and journal; None where one of them is no plain round surface. Source: the job file, ISO 286."""
+    found: list[tuple[float, float]] = []
+    opened: list[Open] = []
+    nominal = 0.0
+    for text in (join.outer, join.inner):
+        ref = floor.loaded.ref(text)
+        node = _round(floor, ref)
+        if node is None:
+            return None
+        nominal = nominal or node.diameter.value
+        limits = limits_of(node.diameter, f"parts.{ref.part}.surfaces.{ref.surface}.diameter")
+        if isinstance(limits, Open):
+            opened.append(limits)
+        else:
+            found.append(limits)
+    if opened:
+        missing = tuple(m for one in opened for m in one.missing)
+        return Open(missing, "; ".join(one.because for one in opened if one.because))
+    (bore_low, bore_high), (journal_low, journal_high) = found
+    return JointSizes(nominal, bore_low, bore_high, journal_low, journal_high)
+
+
+def _round(floor: Floor, ref: Ref) -> Round | None:
+    node = floor.loaded.job.parts[ref.part].surfaces[ref.surface]
+    return node if isinstance(node, Round) and node.kind in ("bore", "cylinder") else None
+
+
+def interference_most(sizes: JointSizes) -> float:
+    """Largest journal less smallest bore, on diameter [mm]; negative is a clearance. Source: ISO 286 (from memory)."""
+    return sizes.journal_high - sizes.bore_low
+
+
+def interference_least(sizes: JointSizes) -> float:
+    """Smallest journal less largest bore, on diameter [mm]; negative is a clearance. Source: ISO 286 (from memory)."""
+    return sizes.journal_low - sizes.bore_high
+
+
+def kind(most: float, least: float) -> str:
+    """interference, clearance, or transition between both, over the limits of the sizes. Source: ISO 286 (from memory)."""
+    if least > 0.0:
+        return "interference"
+    return "clearance" if most <= 0.0 else "transition"
+
+
+def _expansion(floor: Floor, part: str, of: str, temperature: float) -> float | Open:
+    """Mean expansion that is safe for joining [1/K]: the low end of the hub, the high end of a shaft."""
+    from setupcheck.physics.materials import Material, expansion_for
+    from setupcheck.quantities.material_data import material
+
+    name = floor.loaded.job.parts[part].material
+    path = f"parts.{part}.material"
+    if name is None:
+        return Open((path,))
+    found = material(name)
+    if not isinstance(found, Material):
+        return Open((path,), found.because)
+    return expansion_for("joining", "hub" if of == "hub" else "shaft", found, temperature=temperature).value
+
+
+def needed(floor: Floor, join: Join, most: float, sizes: JointSizes) -> float | Open | None:
+    """Temperature the hub must have as it goes over the shaft [degC], for the tightest pair and the usual play.
+
+    T = 20 + [U_max + play + alpha_I D (T_shaft - 20)] / (alpha_A D); sizes hold at 20 degC, whatever the room has.
+    Source: derived in physics.heating, agrees with DIN 7190 (from memory); expansions from rules/data/materials.yaml.
+    """
+    from setupcheck.physics.heating import joining_play, joining_temperature
+
+    if join.by != "shrink" or most <= 0.0:
+        return None
+    outer, inner = floor.loaded.ref(join.outer), floor.loaded.ref(join.inner)
+    shaft_at = join.heat.shaft if join.heat is not None and join.heat.shaft is not None else floor.loaded.job.room
+    hub = _expansion(floor, outer.part, "hub", 100.0)
+    shaft = _expansion(floor, inner.part, "shaft", shaft_at)
+    opened = [x for x in (hub, shaft) if isinstance(x, Open)]
+    if opened or isinstance(hub, Open) or isinstance(shaft, Open):
+        return Open(tuple(m for x in opened for m in x.missing), "; ".join(x.because for x in opened if x.because))
+    try:
+        return joining_temperature(
+            most,
+            play=joining_play(sizes.nominal),
+            diameter=sizes.nominal,
+            hub_expansion=hub,
+            shaft_expansion=shaft,
+            shaft_temperature=shaft_at,
+        )
+    except ValueError as why:
+        raise OutOfRange(str(why)) from None
+
+
+def _planned(join: Join, op: int) -> tuple[float, float] | Open | None:
+    if join.by != "shrink":
+        return None
+    path = f"setups.{op}.join.heat"
+    heat = join.heat
+    missing = tuple(f"{path}.{key}" for key in ("hub", "oven_error") if heat is None or getattr(heat, key) is None)
+    if missing or heat is None or heat.hub is None or heat.oven_error is None:
+        return Open(missing)
+    return heat.hub, heat.oven_error
+
+
+def planned_low(join: Join, op: int) -> float | Open | None:
+    """Planned heat less the error of the oven [degC]; what is lost on the way is not taken off. Source: the job file."""
+    found = _planned(join, op)
+    return found[0] - found[1] if isinstance(found, tuple) else found
+
+
+def planned_high(join: Join, op: int) -> float | Open | None:
+    """Planned heat and the error of the oven [degC]. Source: the job file."""
+    found = _planned(join, op)
+    return found[0] + found[1] if isinstance(found, tuple) else found
+
+
+def cap(floor: Floor, join: Join) -> float | Open | None:
+    """Highest temperature the hub's material stands in one heating [degC]. Source: rules/data/materials.yaml."""
+    from setupcheck.physics.materials import Material
+    from setupcheck.quantities.material_data import material
+
+    if join.by != "shrink":
+        return None
+    part = floor.loaded.ref(join.outer).part
+    name = floor.loaded.job.parts[part].material
+    if name is None:
+        return Open((f"parts.{part}.material",))
+    found = material(name)
+    return found.heat_cap.value if isinstance(found, Material) else Open((f"parts.{part}.material",), found.because)
+
+
+_MOST, _SIZES = {"most": "fit.interference_most"}, {"sizes": "fit.sizes"}
+_HERE = {"floor": "route.floor", "join": ":"}
+
+JOINING = (
+    Quantity("fit.sizes", "join", "", 0, sizes, _HERE, "limits of bore and journal"),
+    Quantity("fit.interference_most", "join", "um", 1, interference_most, _SIZES, "interference of the tightest pair"),
+    Quantity("fit.interference_least", "join", "um", 1, interference_least, _SIZES, "interference of the loosest pair"),
+    Quantity("fit.kind", "join", "", 0, kind, {**_MOST, "least": "fit.interference_least"}, "kind of the fit"),
+    Quantity("heat.needed", "join", "degC", 0, needed, {**_HERE, **_MOST, **_SIZES}, "heat the hub needs to go on"),
+    Quantity(
+        "heat.planned_low", "join", "degC", 0, planned_low, {"join": ":", "op": "@op"}, "least heat the plan gives"
+    ),
+    Quantity(
+        "heat.planned_high", "join", "degC", 0, planned_high, {"join": ":", "op": "@op"}, "most heat the plan gives"
+    ),
+    Quantity("heat.cap", "join", "degC", 0, cap, _HERE, "heat the hub's material stands"),
+)
