@@ -50,9 +50,8 @@ NOT_LOOKED_AT: Mapping[str, Mapping[str, str]] = {
     "MidPlane": {"pivot": "height of the pivot {said}"},
     "Divide": {"faces": "readings on {said} faces", "order": "teeth cut {said}"},
     "Cut": {
-        "depth": "depth {said} of {of}",
+        "depth": "depth {said} of {of} (held against the passes only)",
         "depth_from": "depth of {of} counted from {said}",
-        "passes": "passes {said} of {of}",
         "tool_change_after": "tool change after {said} of {of}",
     },
     "Join": {

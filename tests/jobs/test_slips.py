@@ -181,6 +181,14 @@ SLIPS: dict[tuple[str, str], tuple[Slip, ...]] = {
         Slip(WHEEL, 40, "kind: teeth, count: 72", "kind: teeth, count: 41"),
         Slip(GEAR, 40, "kind: teeth, count: 40", "kind: teeth, count: 39"),
     ),
+    ("CUTTER-001", "a list of passes that nobody added up"): (
+        Slip(WHEEL, 40, "passes: [2.0, 1.0, 0.3]", "passes: [2.0, 1.0, 0.1]"),
+        Slip(GEAR, 40, "passes: [3.1, 0.3]", "passes: [2.9, 0.3]"),
+    ),
+    ("CUTTER-002", "a last pass too thick to finish with"): (
+        Slip(WHEEL, 40, "passes: [2.0, 1.0, 0.3]", "passes: [2.0, 0.5, 0.8]"),
+        Slip(GEAR, 40, "passes: [3.1, 0.3]", "passes: [2.4, 1.0]"),
+    ),
     ("DIVIDE-003", "nothing said of the dividing device"): (
         Slip(WHEEL, 40, 'wheel: {once_per_turn: ±10"}, worm: {once_per_crank: ±4"}, setting: 2"}', "}"),
         Slip(

@@ -119,6 +119,8 @@ QUANTITIES: Mapping[str, FakeQuantity] = {
         FakeQuantity("divide.error_stated", "setup", "", 0),
         FakeQuantity("divide.error_kind", "setup", "", 0),
         FakeQuantity("tilt.error", "setup", "arcmin", 1),
+        FakeQuantity("cutter.passes_left", "cut", "um", 1),
+        FakeQuantity("cutter.last_pass", "cut", "mm", 3),
         FakeQuantity("fit.kind", "join", "", 0),
         FakeQuantity("heat.planned_low", "join", "degC", 0),
         FakeQuantity("heat.planned_high", "join", "degC", 0),
