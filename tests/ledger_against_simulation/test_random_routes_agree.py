@@ -40,9 +40,9 @@ class Tried:
     second_order: float
 
 
-def tried(seed: int, *, three: bool = False) -> Tried | None:
+def tried(number: int, *, three: bool = False) -> Tried | None:
     """One random route, None where a hold does not settle or the route is too steep."""
-    rng = np.random.default_rng([seed, three])
+    rng = np.random.default_rng([number, three])
     given = three_part_route(rng) if three else sayable(any_route(rng), rng)
     try:
         comparison = Comparison(given)
@@ -50,15 +50,15 @@ def tried(seed: int, *, three: bool = False) -> Tried | None:
     except ArithmeticError:
         return None
     found = max(largest(r.measured - r.sharp) for r in results if not r.undetermined) / (1.0 - SHARP)
-    name = f"{'three parts, ' if three else ''}seed {seed}"
+    name = f"{'three parts, ' if three else ''}number {number}"
     return Tried(name, given, comparison.job.text, results, found) if found <= STEEP else None
 
 
 def several(count: int, *, three: bool) -> Iterator[Tried]:
-    seed = 0
+    number = 0
     while count:
-        found = tried(seed, three=three)
-        seed += 1
+        found = tried(number, three=three)
+        number += 1
         if found is not None:
             count -= 1
             yield found
@@ -198,5 +198,5 @@ def test_a_ledger_that_forgot_to_mirror_a_reversed_part_would_be_seen(monkeypatc
         return vector * complex(np.exp(-1j * inserted_at))
 
     monkeypatch.setattr(causes, "part_vector", not_mirrored)
-    with pytest.raises(AssertionError, match=r"seed \d+, .* um"):
+    with pytest.raises(AssertionError, match=r"number \d+, .* um"):
         test_every_figure_agrees_within_the_terms_of_second_order(list(several(10, three=False)))

@@ -186,10 +186,10 @@ def test_a_job_read_twice_gives_the_same_bytes(job: Node) -> None:
 @pytest.mark.parametrize("job", JOBS, ids=lambda p: p.stem)
 def test_two_processes_with_other_hash_seeds_give_the_same_bytes(job: Path) -> None:
     printed = []
-    for seed in ("1", "2"):
+    for salt in ("1", "2"):
         found = subprocess.run(
             [sys.executable, "-m", "setupcheck", "review", "--json", str(job)],
-            env={**os.environ, "PYTHONHASHSEED": seed},
+            env={**os.environ, "PYTHONHASHSEED": salt},
             cwd=Path(__file__).parents[3],
             capture_output=True,
             check=False,
