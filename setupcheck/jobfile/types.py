@@ -119,11 +119,6 @@ AngleBound = Annotated[float, _plain(notation.angle_bound), TEXT]
 Temperature = Annotated[float, _plain(notation.temperature), TEXT]
 TemperatureDifference = Annotated[float, _plain(notation.temperature_difference), TEXT]
 Duration = Annotated[float, _plain(notation.duration), TEXT]
-Torque = Annotated[float, _plain(notation.torque), TEXT]
-"""[N mm]"""
-Force = Annotated[float, _plain(notation.force), TEXT]
-Mass = Annotated[float, _plain(notation.mass), TEXT]
-"""[kg]"""
 Speed = Annotated[float, _plain(notation.speed), TEXT]
 """[rev/min]"""
 Fraction = Annotated[float, _plain(notation.fraction), TEXT_OR_NUMBER]

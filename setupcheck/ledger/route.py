@@ -370,8 +370,3 @@ def untouched(
         clock.along(1 + 0j),
         pattern=pattern,
     )
-
-
-def zero() -> Account:
-    """An error that does not exist."""
-    return real(0.0)

@@ -49,24 +49,6 @@ def folded(harmonic: int, count: int) -> int:
     return min(rest, count - rest)
 
 
-def flank_pitch_range(eccentricity: float, pressure_angle: float) -> float:
-    """Cumulative pitch deviation that an eccentric tooth ring shows on one flank, peak to peak [mm].
-
-    F_p = 2 e / cos(alpha): the flank's normal leans by alpha, so at a fixed radius one flank moves more than the gap (2 e).
-
-    eccentricity    distance of tooth-ring axis and axis of use [mm], >= 0
-    pressure_angle  transverse pressure angle [rad], 0 .. pi/4
-    Raises: ValueError for an angle outside 0 .. pi/4.
-    Source: derived from the rigid shift of an involute; checked against an exact involute in tests/published.
-
-    >>> round(flank_pitch_range(0.020, math.radians(20.0)), 5)
-    0.04257
-    """
-    if not 0.0 <= pressure_angle <= math.pi / 4.0:
-        raise ValueError(f"a pressure angle of {math.degrees(pressure_angle):.1f} deg is outside 0 .. 45 deg")
-    return 2.0 * eccentricity / math.cos(pressure_angle)
-
-
 def backlash_swing(eccentricity: float, pressure_angle: float) -> float:
     """Change of backlash over one turn, peak to peak [mm]: 4 e tan(alpha). Source: geometry (both flanks close by e tan).
 
@@ -131,17 +113,16 @@ def wave_ends(vectors: Complexes, at: Reals) -> tuple[Reals, Reals]:
     return low, high
 
 
-def flank_arcs(offset: Complexes, pattern: Pattern, arcs: Reals, *, side: int, driven: bool = False) -> Reals:
-    """Arc deviation of one flank of every gap [mm], shape (trials, count); side +1 (counter-clockwise flank) or -1.
-
-    At fixed radius (e / cos alpha) sin(phi - theta - side (alpha + pi/2N)) + r Delta; `driven` by a worm on that flank
-    (e / cos alpha) sin(phi - theta - side alpha) + r Delta.  side 0 gives the gap centre: e sin(phi - theta) + r Delta.
-    """
-    return waves(offset * (flank_turn(pattern, side=side, driven=driven) * -1j), angles(pattern)) + arcs
-
-
 def flank_turn(pattern: Pattern, *, side: int, driven: bool) -> complex:
-    """Factor f that makes of an eccentricity X the wave of one flank, Im(f X exp(-i theta_j)): see `flank_arcs`."""
+    """Factor f that makes of an eccentricity X the wave of one flank, Im(f X exp(-i theta_j)).
+
+    side  +1 (counter-clockwise flank) or -1: (e / cos alpha) sin(phi - theta - side (alpha + pi/2N)) at fixed radius,
+          (e / cos alpha) sin(phi - theta - side alpha) `driven` by a worm on that flank; 0, the gap centre: e sin(phi - theta)
+
+    >>> ring = Pattern(90, 90.0, pressure_angle=math.radians(20.0))
+    >>> round(2.0 * 0.020 * abs(flank_turn(ring, side=1, driven=False)), 5)      # F_p = 2 e / cos alpha
+    0.04257
+    """
     if side == 0:
         return 1 + 0j
     alpha = pattern.pressure_angle or 0.0
@@ -217,17 +198,3 @@ def rounding_figure(pattern: Pattern, *, stepwise: bool) -> float:
         return 0.0
     arcs = (pattern.radius * np.asarray(pattern.rounding))[None, :]
     return float((largest_steps if stepwise else ranges)(arcs)[0])
-
-
-def pitch_from_differences(readings: Reals) -> tuple[Reals, Reals]:
-    """Single and cumulative pitch deviations from readings of adjacent pitches against one setting.
-
-    readings  comparator readings, one per pitch, whole circle, any unit.  Returns (single, cumulative), same unit.
-    The mean of a closed circle is the true setting; the cumulative sum closes on zero.
-    Source: closure of the circle, the usual reduction of a comparative pitch test (from memory).
-
-    >>> pitch_from_differences(np.array([12., 8., 5., 11., 14., 9., 6., 7.]))[1].tolist()
-    [3.0, 2.0, -2.0, 0.0, 5.0, 5.0, 2.0, 0.0]
-    """
-    single = readings - readings.mean()
-    return single, np.cumsum(single)

@@ -188,10 +188,10 @@ def _backlash_swing(floor: Floor, stack: Stack) -> Built | Open:
     if g.pattern is None or g.pattern.pressure_angle is None:
         return Open((f"parts.{g.part}.surfaces.{g.name}.pressure_angle",))
     offset = g.offset - r.axis_at(g.z)
-    swing = 2.0 * math.tan(g.pattern.pressure_angle)
-    figure: Figure = figures.Vector((offset,), 2.0 * swing)
+    swing = teeth.backlash_swing(1.0, g.pattern.pressure_angle)  # for each mm of eccentricity
+    figure: Figure = figures.Vector((offset,), swing)
     if _scatters_outwards(g):
-        figure = figures.ToothRunOut(offset, g.pattern, swing)
+        figure = figures.ToothRunOut(offset, g.pattern, swing / 2.0)
     return Built(figure, _second_order(lean=g.lean - r.lean, lever=abs(g.z - r.z)))
 
 

@@ -5,7 +5,7 @@ from __future__ import annotations
 from dataclasses import dataclass
 
 from setupcheck.rulebook.needs import Book, Missing, S, read
-from setupcheck.rulebook.records import Limit, Number, OfQuantity, Requirement
+from setupcheck.rulebook.records import Limit, Number, Requirement
 
 
 @dataclass(frozen=True, slots=True)
@@ -54,8 +54,3 @@ def limits_of(require: Requirement, book: Book[S], at: S) -> Limits | Missing | 
         values.append(got.value)
         rests_on.update(got.rests_on)
     return Limits(values[0], values[1], tuple(sorted(rests_on)))
-
-
-def quantities_in(require: Requirement) -> tuple[str, ...]:
-    """Names of the quantities that serve as limits of a requirement."""
-    return tuple(limit.quantity for limit in (require.low, require.high) if isinstance(limit, OfQuantity))

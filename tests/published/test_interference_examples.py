@@ -181,7 +181,7 @@ def test_brass_in_steel_computed_independently_for_this_project() -> None:
 
 
 def test_an_iron_rim_with_a_steel_tyre_computed_independently_for_this_project() -> None:
-    """Rim 14/16 in, tyre outside 16.75 in, 20 kpsi allowed: the lecture shows no answer."""
+    """Rim 14/16 in, tyre outside 16.75 in, 20 kpsi allowed: its source prints no answer."""
     joint = Joint(
         diameter=16,
         hub_outside=16.75,

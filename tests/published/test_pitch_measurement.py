@@ -12,7 +12,8 @@ import math
 import numpy as np
 import pytest
 
-from setupcheck.ledger.teeth import largest_steps, pitch_from_differences, ranges
+from setupcheck.division.readings import pitch_from_differences
+from setupcheck.ledger.teeth import largest_steps, ranges
 
 from .bench import MANY, UM, sampled, stack
 

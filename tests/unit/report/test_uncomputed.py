@@ -95,7 +95,9 @@ def test_a_tilt_that_is_compared_with_the_worm_is_not_told_and_any_other_is() ->
     assert "tilt" not in tilt
     assert "depth 3.3 mm of teeth" in tilt
     hobbed = changed(WHEEL, ("fly: {kind: single-point", "fly: {kind: hob"))
-    assert "tilt 3deg 34' 35\" (compared with the worm only where its wheel is cut gap by gap)" in " ".join(told(hobbed))
+    assert "tilt 3deg 34' 35\" (compared with the worm only where its wheel is cut gap by gap)" in " ".join(
+        told(hobbed)
+    )
 
 
 def test_a_head_that_stands_straight_has_no_tilt_to_compare() -> None:

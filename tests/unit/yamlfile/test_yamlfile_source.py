@@ -1,6 +1,7 @@
 """Getting the text of a file."""
 
 import os
+import tempfile
 from pathlib import Path
 
 import pytest
@@ -8,6 +9,8 @@ import pytest
 from setupcheck.errors import JobError
 from setupcheck.yamlfile import read_text
 from setupcheck.yamlfile.limits import LARGEST_FILE
+
+NOBODY = 65534
 
 
 def refusal(path):
@@ -43,11 +46,28 @@ def test_a_pipe_is_refused_and_never_waited_for(tmp_path):
     assert refusal(tmp_path / "pipe").endswith("pipe: this is not a plain file. Name a file on the disk")
 
 
-@pytest.mark.skipif(not hasattr(os, "geteuid") or os.geteuid() == 0, reason="the superuser may read everything")
-def test_a_file_that_may_not_be_read_is_said_so(tmp_path):
-    file = tmp_path / "job.yaml"
+@pytest.fixture
+def nobody():
+    """Somebody who may not read everything, also where the tests are run by the superuser; a folder that is open to all."""
+    with tempfile.TemporaryDirectory() as folder:
+        Path(folder).chmod(0o755)
+        before = os.geteuid()
+        if before == 0:
+            os.seteuid(NOBODY)
+        try:
+            yield Path(folder)
+        finally:
+            os.seteuid(before)
+
+
+@pytest.mark.skipif(not hasattr(os, "geteuid"), reason="permissions of this kind are not known here")
+def test_a_file_that_may_not_be_read_is_said_so(nobody):
+    file = nobody / "job.yaml"
+    me = os.geteuid()
+    os.seteuid(os.getuid())
     file.write_text("a: 1")
     file.chmod(0)
+    os.seteuid(me)
     assert refusal(file).endswith("the file may not be read. Check its permissions")
 
 
