@@ -84,7 +84,12 @@ def told(text: str) -> list[str]:
 def test_everything_a_shrunk_joint_states_is_looked_at_and_of_a_screwed_one_nothing() -> None:
     assert not any(line.startswith("op 70") for line in told(WHEEL))
     screwed = " ".join(told(changed(WHEEL, ("by: shrink", "by: screw"))))
-    for said in ("heat (hub 175 degC", "grips first at the shoulder-end", "joint degreased", "must carry torque 40 N m"):
+    for said in (
+        "heat (hub 175 degC",
+        "grips first at the shoulder-end",
+        "joint degreased",
+        "must carry torque 40 N m",
+    ):
         assert said in screwed
     assert "serves from 5 degC to 45 degC" in screwed
     assert "roughness Rz 2.5 um of bore" in screwed
@@ -122,14 +127,22 @@ def test_size_classes_and_size_limits_are_told_and_bare_sizes_are_not() -> None:
 def test_worm_mesh_and_cutter_are_told_where_no_wheel_is_cut_by_a_single_point() -> None:
     lines = told(changed(WHEEL, ("fly: {kind: single-point", "fly: {kind: hob")))
     assert any(line.startswith("worm: profile ZA") and "thread thickness measured" in line for line in lines)
-    assert any(line.startswith("mesh: error of the shaft angle 1'; housing of grey-iron") or "housing" in line for line in lines)
+    assert any(
+        line.startswith("mesh: error of the shaft angle 1'; housing of grey-iron") or "housing" in line
+        for line in lines
+    )
     assert any(line.startswith("cutter fly: tip radius 20 mm, insert envelope") for line in lines)
     assert not any(line.startswith(("worm", "mesh", "cutter")) for line in told(WHEEL))
 
 
 def test_what_only_the_backlash_needs_is_told_where_none_is_required() -> None:
     lines = " ".join(told(changed(WHEEL, ("  - {what: backlash, between: [10 um, 120 um]}\n", ""))))
-    for said in ("housing of grey-iron", "width of the insert 2.385", "error of the depth of teeth 10 um", "worm of 16MnCr5"):
+    for said in (
+        "housing of grey-iron",
+        "width of the insert 2.385",
+        "error of the depth of teeth 10 um",
+        "worm of 16MnCr5",
+    ):
         assert said in lines
 
 
