@@ -119,6 +119,8 @@ AngleBound = Annotated[float, _plain(notation.angle_bound), TEXT]
 Temperature = Annotated[float, _plain(notation.temperature), TEXT]
 TemperatureDifference = Annotated[float, _plain(notation.temperature_difference), TEXT]
 Duration = Annotated[float, _plain(notation.duration), TEXT]
+Force = Annotated[float, _plain(notation.force), TEXT]
+"""A force [N]; the unit must be written."""
 Speed = Annotated[float, _plain(notation.speed), TEXT]
 """[rev/min]"""
 Fraction = Annotated[float, _plain(notation.fraction), TEXT_OR_NUMBER]

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from setupcheck.quantities import holds, judged
 from setupcheck.quantities.book import Quantity
+from setupcheck.quantities.clamping import CLAMP
 from setupcheck.quantities.cutting import CUTTING
 from setupcheck.quantities.division import DIVIDE
 from setupcheck.quantities.joining import JOINING
@@ -234,4 +235,4 @@ PLACE = (
     ),
 )
 
-TABLES: tuple[Quantity, ...] = (*ROUTE, *STACK, *HOLD, *ALLOW, *DIVIDE, *TILT, *JOINING, *CUTTING, *PLACE)
+TABLES: tuple[Quantity, ...] = (*ROUTE, *STACK, *HOLD, *ALLOW, *DIVIDE, *TILT, *JOINING, *CUTTING, *PLACE, *CLAMP)

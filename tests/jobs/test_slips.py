@@ -146,8 +146,8 @@ SLIPS: dict[tuple[str, str], tuple[Slip, ...]] = {
         Slip(
             PLATE,
             20,
-            "by: soft-jaws, runout: 1 thou}",
-            "by: soft-jaws, runout: {measured: 1 thou, uncertainty: 0.2 thou, high_at: jaw 3}}",
+            "by: soft-jaws, runout: 1 thou,",
+            "by: soft-jaws, runout: {measured: 1 thou, uncertainty: 0.2 thou, high_at: jaw 3},",
         ),
     ),
     ("HOLD-009", "no machine named"): (
@@ -188,6 +188,10 @@ SLIPS: dict[tuple[str, str], tuple[Slip, ...]] = {
     ("CUTTER-002", "a last pass too thick to finish with"): (
         Slip(WHEEL, 40, "passes: [2.0, 1.0, 0.3]", "passes: [2.0, 0.5, 0.8]"),
         Slip(GEAR, 40, "passes: [3.1, 0.3]", "passes: [2.4, 1.0]"),
+    ),
+    ("CLAMP-001", "the jaws catch too little of the part"): (
+        Slip(WHEEL, 10, "grip: {from: -40, to: -5}", "grip: {from: -40, to: -30}"),
+        Slip(PLATE, 20, "grip: {from: 0.15, to: 0.55}", "grip: {from: 0.15, to: 0.3}"),
     ),
     ("DIVIDE-003", "nothing said of the dividing device"): (
         Slip(WHEEL, 40, 'wheel: {once_per_turn: ±10"}, worm: {once_per_crank: ±4"}, setting: 2"}', "}"),

@@ -35,7 +35,7 @@ READ = {
     "Checked": "caution op by note",
     "Through": "by runout",
     "Span": "low high",
-    "Centre": "on by at runout clearance rests x y grip through turned",
+    "Centre": "on by at runout clearance rests x y grip grip_force through turned",
     "Square": "on by face_runout across chip",
     "Spacer": "name length",
     "Stop": "on against error touches radius direction spacers",
