@@ -29,6 +29,7 @@ from setupcheck.jobfile.types import (
     Reading,
     Size,
     Speed,
+    Temperature,
     in_file_units,
     units_of,
 )
@@ -43,7 +44,8 @@ class Shop(BaseModel):
 class Dimension(Shop):
     """A size with its limits or its measured value: `32 H6`, `32.041 ±0.003`, `{measured: 2.31 mm, uncertainty: 4 um}`.
 
-    lower, upper  deviations from `nominal` [mm]; `uncertainty` is expanded, k = 2
+    lower, upper    deviations from `nominal` [mm]; `uncertainty` is expanded, k = 2
+    at_temperature  of the part as it was measured, the gauge at 20 degC [degC]; the size is then brought back to 20 degC
     """
 
     nominal: Length | None = None
@@ -53,6 +55,7 @@ class Dimension(Shop):
     measured: Length | None = None
     uncertainty: Bound | None = None
     at: str | None = None
+    at_temperature: Temperature | None = None
 
     @model_validator(mode="before")
     @classmethod
@@ -77,6 +80,8 @@ class Dimension(Shop):
             )
         if self.lower is not None and self.upper is not None and self.lower > self.upper:
             raise ValueError("the lower deviation is above the upper one. Write lower: -0.1 mm and upper: 0.1 mm")
+        if self.at_temperature is not None and self.measured is None:
+            raise ValueError("at_temperature says how warm a measured size was. Write measured: beside it, or drop it")
         return self
 
     @property
@@ -96,6 +101,7 @@ class Deviation(Shop):
     high_at      where the metal comes nearest the probe: `tooth 14`, `90 deg`, `mark`, `jaw 2`, a surface's name
     device       what held or measured it; alone it takes its typical value
     mark         `kept`: the part goes back the same way round in the same device, so it is one cause in several setups
+    indicator    one division of the indicator that reads it [mm], at a hold
     """
 
     at_most: Bound | None = None
@@ -105,6 +111,7 @@ class Deviation(Shop):
     high_at: str | None = None
     device: str | None = None
     mark: Literal["kept", "lost"] | None = None
+    indicator: Bound | None = None
 
     @model_validator(mode="before")
     @classmethod
@@ -119,6 +126,8 @@ class Deviation(Shop):
             raise ValueError("uncertainty and standard_uncertainty say the same thing twice. Keep one of them")
         if self.measured is None and self.at_most is None and self.device is None:
             raise ValueError("this error states nothing. Write at_most: 10 um, or measured: 6 um, or a device")
+        if self.indicator == 0.0:
+            raise ValueError("an indicator has divisions. Write one of them, as in indicator: 10 um")
         return self
 
     @property

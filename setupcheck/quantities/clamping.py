@@ -11,6 +11,7 @@ from setupcheck.ledger.route import State
 from setupcheck.quantities.book import Open, OutOfRange, Quantity
 from setupcheck.quantities.devices import DEVICES
 from setupcheck.quantities.holding import Held
+from setupcheck.quantities.measuring import tolerance
 from setupcheck.quantities.requirements import read_stack
 from setupcheck.quantities.scopes import CutEntry, HoldEntry
 from setupcheck.quantities.shop import Floor
@@ -277,20 +278,7 @@ def _round_limit(floor: Floor, ref: Ref) -> float | None:
     if limits:
         return min(limits)
     node = job.parts[ref.part].surfaces[ref.surface]
-    return size_tolerance(node) if isinstance(node, Round) else None
-
-
-def size_tolerance(node: Round) -> float | None:
-    """Width of a diameter's tolerance [mm]; None where it has none. Source: the job file; ISO 286 tables in rules/data."""
-    size = node.diameter
-    if size.lower is not None or size.upper is not None:
-        return (size.upper or 0.0) - (size.lower or 0.0)
-    if size.fit is None or size.nominal is None:
-        return None
-    from setupcheck.quantities.fit_tables import limits
-
-    found = limits(size.nominal, size.fit)
-    return found.upper - found.lower
+    return tolerance(node.diameter) if isinstance(node, Round) else None
 
 
 _HERE = {"floor": "route.floor", "entry": ":", "op": "@op"}

@@ -8,6 +8,7 @@ from setupcheck.quantities.clamping import CLAMP
 from setupcheck.quantities.cutting import CUTTING
 from setupcheck.quantities.division import DIVIDE
 from setupcheck.quantities.joining import JOINING
+from setupcheck.quantities.measuring import MEASURE
 from setupcheck.quantities.tilting import TILT
 
 ROUTE = (
@@ -235,4 +236,16 @@ PLACE = (
     ),
 )
 
-TABLES: tuple[Quantity, ...] = (*ROUTE, *STACK, *HOLD, *ALLOW, *DIVIDE, *TILT, *JOINING, *CUTTING, *PLACE, *CLAMP)
+TABLES: tuple[Quantity, ...] = (
+    *ROUTE,
+    *STACK,
+    *HOLD,
+    *ALLOW,
+    *DIVIDE,
+    *TILT,
+    *JOINING,
+    *CUTTING,
+    *PLACE,
+    *CLAMP,
+    *MEASURE,
+)

@@ -20,8 +20,8 @@ NOT_LOOKED_AT: Mapping[str, Mapping[str, str]] = {
     "Throat": {"radius": "radius {said} of {of}"},
     "Worm": {
         "profile": "profile {said}",
-        "thread_thickness": "thread thickness {said}",
-        "end_float": "end float {said}",
+        "thread_thickness": "thread thickness {said} (looked at only for being measured)",
+        "end_float": "end float {said} (looked at only for being stated)",
         "runout": "run-out {said}",
         "speed": "speed {said}",
     },

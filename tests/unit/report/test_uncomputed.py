@@ -15,8 +15,8 @@ from setupcheck.report.uncomputed import NOT_LOOKED_AT, in_lines, uncomputed
 from tests.unit.report.sample import GEAR, PLATE, WHEEL, changed, line_of, loaded, reviewed
 
 READ = {
-    "Dimension": "nominal lower upper fit measured uncertainty at",
-    "Deviation": "at_most measured uncertainty standard_uncertainty high_at device mark",
+    "Dimension": "nominal lower upper fit measured uncertainty at at_temperature",
+    "Deviation": "at_most measured uncertainty standard_uncertainty high_at device mark indicator",
     "Round": "kind diameter low high hole made",
     "Flat": "kind at facing diameter hole made",
     "Throat": "kind diameter at made",
