@@ -190,8 +190,8 @@ def _finished_round(floor: Floor, op: int) -> list[Ref]:
 def ring(floor: Floor, entry: HoldEntry, op: int) -> Ring | None:
     """The ring that jaws squeeze while something round is finished: what stands round the bore at the grip.
 
-    The smallest outside and the largest bore over the grip, as the last operation of the holding leaves them. None for a
-    solid part, for a part on its shaft (the shaft carries it), and where nothing round is finished.
+    The smallest outside and the largest bore over the grip, as the last operation of the holding leaves them.
+    None for a solid part, for a part on its shaft (the shaft carries it), and where nothing round is finished.
     Source: sizes of the job file.
     """
     centre = _centre(entry, JAWS)
@@ -225,8 +225,9 @@ def wall_share(ring: Ring) -> float:
 def lobing(floor: Floor, entry: HoldEntry, path: str, ring: Ring, op: int) -> float | Open | None:
     """Lobes left on what was turned round between the jaws, when they are let go [mm]: thin ring, n equal radial forces.
 
-    F R^3 / (E I) times a factor of the number of jaws; lowest modulus of the material; the ring as long as the gripped
-    surface; narrow jaws.  None without `grip_force`, and for a ring with a wall of a tenth of its diameter or more.
+    F R^3 / (E I) times a factor of the number of jaws: 0.0302 for three, 0.0115 for four.
+    Lowest modulus of the material; the ring as long as the gripped surface; narrow jaws.
+    None without `grip_force`, and for a ring with a wall of a tenth of its diameter or more.
     Source: thin ring as in Roark's formulas and Timoshenko (from memory), physics.clamping; modulus rules/data/materials.yaml.
     """
     from setupcheck.physics.clamping import lobing_left
