@@ -11,6 +11,8 @@ Path = tuple[str | int, ...]
 
 _INDICATED = {"centre": "runout", "and_centre": "runout", "square": "face_runout", "stop": "error", "clock": "error"}
 
+_SIZE = {"nominal", "measured"}
+"""An entry with one of these keys is a size, and `at_temperature` in it no name."""
 _ERROR = {"at_most", "measured", "device"}
 """An entry with one of these keys is an error entry, and `indicator` in it no name."""
 
@@ -22,11 +24,15 @@ def misplaced(drawing: Drawing) -> Iterator[Miss]:
 
 def _within(node: object, path: Path) -> Iterator[Miss]:
     if isinstance(node, Mapping):
-        if "at_temperature" in node and "measured" in node and not _is_diameter(path):
-            yield Miss(
-                (*path, "at_temperature"),
-                "only the diameter of a surface is brought back to 20 degC. Correct this size by hand, and drop it",
-            )
+        if "at_temperature" in node and node.keys() & _SIZE:
+            if not _is_diameter(path):
+                says = (
+                    "only the diameter of a surface is brought back to 20 degC. Correct this size by hand, and drop it"
+                )
+                yield Miss((*path, "at_temperature"), says)
+            elif "measured" not in node:
+                says = "at_temperature says how warm a measured size was. Write measured: beside it, or drop it"
+                yield Miss((*path, "at_temperature"), says)
         if not _is_error_of_a_hold(path) and "indicator" in node and node.keys() & _ERROR:
             yield Miss(
                 (*path, "indicator"),

@@ -23,6 +23,7 @@ from setupcheck.jobfile.types import (
     Angle,
     AngleBound,
     Bound,
+    Division,
     Length,
     Limit,
     Limits,
@@ -80,8 +81,6 @@ class Dimension(Shop):
             )
         if self.lower is not None and self.upper is not None and self.lower > self.upper:
             raise ValueError("the lower deviation is above the upper one. Write lower: -0.1 mm and upper: 0.1 mm")
-        if self.at_temperature is not None and self.measured is None:
-            raise ValueError("at_temperature says how warm a measured size was. Write measured: beside it, or drop it")
         return self
 
     @property
@@ -111,7 +110,7 @@ class Deviation(Shop):
     high_at: str | None = None
     device: str | None = None
     mark: Literal["kept", "lost"] | None = None
-    indicator: Bound | None = None
+    indicator: Division | None = None
 
     @model_validator(mode="before")
     @classmethod
@@ -126,8 +125,6 @@ class Deviation(Shop):
             raise ValueError("uncertainty and standard_uncertainty say the same thing twice. Keep one of them")
         if self.measured is None and self.at_most is None and self.device is None:
             raise ValueError("this error states nothing. Write at_most: 10 um, or measured: 6 um, or a device")
-        if self.indicator == 0.0:
-            raise ValueError("an indicator has divisions. Write one of them, as in indicator: 10 um")
         return self
 
     @property

@@ -11,10 +11,10 @@ from setupcheck.ledger.route import State
 from setupcheck.quantities.book import Open, OutOfRange, Quantity
 from setupcheck.quantities.devices import DEVICES
 from setupcheck.quantities.holding import Held
-from setupcheck.quantities.measuring import tolerance
 from setupcheck.quantities.requirements import read_stack
 from setupcheck.quantities.scopes import CutEntry, HoldEntry
 from setupcheck.quantities.shop import Floor
+from setupcheck.quantities.sized import material_of, tolerance
 
 CHUCKS = ("three-jaw", "four-jaw", "soft-jaws", "shimmed-jaws", "collet", "pot-chuck")
 """Devices from which a part stands out. Source: common practice."""
@@ -231,19 +231,13 @@ def lobing(floor: Floor, entry: HoldEntry, path: str, ring: Ring, op: int) -> fl
     Source: thin ring as in Roark's formulas and Timoshenko (from memory), physics.clamping; modulus rules/data/materials.yaml.
     """
     from setupcheck.physics.clamping import lobing_left
-    from setupcheck.physics.materials import Material
-    from setupcheck.quantities.material_data import material
 
     centre = entry.entry
     if not isinstance(centre, Centre) or centre.grip_force is None or wall_share(ring) >= THIN:
         return None
-    part = floor.part_of[op]
-    name, where = floor.loaded.job.parts[part].material, f"parts.{part}.material"
-    if name is None:
-        return Open((where,))
-    found = material(name)
-    if not isinstance(found, Material):
-        return Open((where,), found.because)
+    found = material_of(floor, floor.part_of[op])
+    if isinstance(found, Open):
+        return found
     try:
         return lobing_left(
             centre.grip_force,

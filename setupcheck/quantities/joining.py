@@ -8,8 +8,8 @@ from setupcheck.jobfile.models import Dimension, Round
 from setupcheck.jobfile.names import Ref
 from setupcheck.jobfile.setups import Join
 from setupcheck.quantities.book import Open, OutOfRange, Quantity
-from setupcheck.quantities.measuring import at_reference
 from setupcheck.quantities.shop import Floor
+from setupcheck.quantities.sized import at_reference
 
 
 @dataclass(frozen=True, slots=True)
@@ -23,7 +23,7 @@ class JointSizes:
     journal_high: float
 
 
-def limits_of(given: Dimension, path: str, material: str | None = None) -> tuple[float, float] | Open:
+def limits_of(given: Dimension, path: str, floor: Floor) -> tuple[float, float] | Open:
     """Smallest and largest size [mm]: as measured (brought back to 20 degC), by its limits, or by its ISO 286 class.
 
     Source: the job file; ISO 286 tables in rules/data (each row with its own source).
@@ -31,7 +31,7 @@ def limits_of(given: Dimension, path: str, material: str | None = None) -> tuple
     if given.measured is not None:
         if given.uncertainty is None:
             return Open((f"{path}.uncertainty",))
-        cold = at_reference(given, path, material)
+        cold = at_reference(given, path, floor)
         return cold if isinstance(cold, Open) else (cold[0] - given.uncertainty, cold[1] + given.uncertainty)
     assert given.nominal is not None
     if given.lower is not None or given.upper is not None:
@@ -55,11 +55,7 @@ def sizes(floor: Floor, join: Join) -> JointSizes | Open | None:
         if node is None:
             return None
         nominal = nominal or node.diameter.value
-        limits = limits_of(
-            node.diameter,
-            f"parts.{ref.part}.surfaces.{ref.surface}.diameter",
-            floor.loaded.job.parts[ref.part].material,
-        )
+        limits = limits_of(node.diameter, f"parts.{ref.part}.surfaces.{ref.surface}.diameter", floor)
         if isinstance(limits, Open):
             opened.append(limits)
         else:

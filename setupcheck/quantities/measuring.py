@@ -4,11 +4,12 @@ from __future__ import annotations
 
 from setupcheck.jobfile.models import Deviation, Dimension
 from setupcheck.jobfile.setups import Centre, Setup
-from setupcheck.quantities.book import Open, OutOfRange, Quantity
+from setupcheck.quantities.book import Open, Quantity
 from setupcheck.quantities.readings import Reading
 from setupcheck.quantities.requirements import Stack
 from setupcheck.quantities.scopes import HoldEntry
 from setupcheck.quantities.shop import Floor
+from setupcheck.quantities.sized import at_reference, tolerance
 from setupcheck.quantities.tilting import cuts_the_wheel
 
 _IDLE = ("worm.runout", ".head.blocks", ".mid_plane.pivot")
@@ -33,18 +34,6 @@ def uncertainty_stated(reading: Reading) -> str | Open | None:
     return "stated" if stated else Open((f"{reading.path}.uncertainty",))
 
 
-def tolerance(size: Dimension) -> float | None:
-    """Width of a size's tolerance [mm]; None where it has none. Source: the job file; ISO 286 tables in rules/data."""
-    if size.lower is not None or size.upper is not None:
-        return (size.upper or 0.0) - (size.lower or 0.0)
-    if size.fit is None or size.nominal is None:
-        return None
-    from setupcheck.quantities.fit_tables import limits
-
-    found = limits(size.nominal, size.fit)
-    return found.upper - found.lower
-
-
 def tolerance_of(reading: Reading) -> float | None:
     """Width of the tolerance that a measured size has to prove [mm]. Source: the job file; ISO 286 tables in rules/data."""
     return tolerance(reading.record) if isinstance(reading.record, Dimension) else None
@@ -66,37 +55,6 @@ def share(reading: Reading) -> float | None:
     return share_of_bound(record.uncertainty, bound=width / 2.0) if width and record.uncertainty is not None else None
 
 
-def at_reference(size: Dimension, path: str, material: str | None) -> tuple[float, float] | Open:
-    """Smallest and largest the measured size can be at 20 degC, over the range of the material's expansion [mm].
-
-    D_20 = D / (1 + alpha (T - 20)), the gauge at 20 degC; the size itself where `at_temperature` is not stated.
-    path  of the size, under its part.  Source: physics.measuring; expansions rules/data/materials.yaml.
-    """
-    from setupcheck.physics.heating import REFERENCE_TEMPERATURE
-    from setupcheck.physics.materials import Material
-    from setupcheck.physics.measuring import size_at_reference
-    from setupcheck.quantities.material_data import material as listed
-
-    assert size.measured is not None
-    if size.at_temperature is None:
-        return size.measured, size.measured
-    where = f"{path.partition('.surfaces.')[0]}.material"
-    found = listed(material) if material is not None else None
-    if found is None:
-        return Open((where,))
-    if not isinstance(found, Material):
-        return Open((where,), found.because)
-    bounds = found.heating if size.at_temperature >= REFERENCE_TEMPERATURE else found.cooling
-    try:
-        ends = [
-            size_at_reference(size.measured, expansion=alpha, temperature=size.at_temperature)
-            for alpha in (bounds.low, bounds.high)
-        ]
-    except ValueError as why:
-        raise OutOfRange(f"{path}.at_temperature: {why}") from None
-    return min(ends), max(ends)
-
-
 def warm_by(floor: Floor, reading: Reading) -> float | Open | None:
     """How far a size measured warm or cold reads off its size at 20 degC, the larger end of the expansion [mm].
 
@@ -106,8 +64,7 @@ def warm_by(floor: Floor, reading: Reading) -> float | Open | None:
     record = reading.record
     if not isinstance(record, Dimension) or record.at_temperature is None or record.measured is None:
         return None
-    part = reading.path.split(".")[1]
-    ends = at_reference(record, reading.path, floor.loaded.job.parts[part].material)
+    ends = at_reference(record, reading.path, floor)
     return ends if isinstance(ends, Open) else max(abs(record.measured - end) for end in ends)
 
 

@@ -1,4 +1,4 @@
-"""What was measured, how well and how warm, in whole jobs: the shipped wheel with one entry changed."""
+"""What was measured, how well and how warm, in whole jobs. Invented part, invented figures."""
 
 from __future__ import annotations
 
@@ -9,9 +9,88 @@ from setupcheck.jobfile.reading import read_job_text
 from setupcheck.quantities.book import Known, Open
 from setupcheck.quantities.joining import JointSizes
 from setupcheck.rulebook import Finding
-from setupcheck.shipped import shipped
 
-WHEEL = shipped("jobs/rotator-worm-wheel.yaml").read_text()
+WHEEL = """\
+setupcheck: 1
+title: Worm wheel, bored after the teeth
+units: mm
+parts:
+  wheel:
+    material: CuSn12-C
+    surfaces:
+      rim:    {kind: cylinder, diameter: 114, from: 0, to: 20, made: stock}
+      raw:    {kind: face, at: -1, facing: -z, diameter: 114, made: stock}
+      hub:    {kind: cylinder, diameter: 48 h6, from: 20, to: 26}
+      seat:   {kind: face, at: 20, facing: +z, diameter: 110}
+      throat: {kind: throat, diameter: 111, radius: 10.5, at: 12}
+      teeth:  {kind: teeth, count: 72, on_circle: 108, at: 12, width: 15}
+      bore:   {kind: bore, diameter: 32 H6, from: 0, to: 26}
+      back:   {kind: face, at: 0, facing: -z, diameter: 100}
+  spindle:
+    material: 42CrMo4
+    surfaces:
+      journal:  {kind: cylinder, diameter: 32.041 ±0.003, from: 0, to: 26}
+      shoulder: {kind: face, at: 0, facing: +z, diameter: 60}
+      bearings: {kind: cylinder, diameter: 40, from: -80, to: -10}
+    given:
+      - {of: journal, about: bearings, runout: 2 um}
+      - {of: shoulder, about: bearings, face_runout: 4 um, across: 56}
+worm:
+  starts: 1
+  hand: right
+  axial_module: 1.5
+  reference_diameter: 24
+  tip_diameter: 27
+  pressure_angle: 20 deg
+  profile: ZA
+  thread_thickness: {measured: 2.31 mm, uncertainty: 4 um}
+  end_float: 10 um
+mesh: {wheel: wheel.teeth, centre_distance: 66.000 ±0.010}
+cutters:
+  fly: {kind: single-point, tip_radius: 20.0}
+machines:
+  lathe-A: {kind: lathe, axis_runout: 2 um}
+  head-B:  {kind: dividing-head, worm_ratio: 40, nose_points: left, cutter_stands: front, axis_runout: 3 um}
+setups:
+  - op: 20
+    machine: lathe-A
+    looks_at_tool: +z
+    hold:
+      centre: {on: rim, by: soft-jaws, at: 5, runout: 20 um}
+      square: {on: raw, by: jaws, face_runout: 15 um, across: 90}
+    cut: {hub: {}, seat: {error: 10 um}, throat: {error: 10 um}}
+  - op: 40
+    machine: head-B
+    looks_at_tool: -z
+    hold:
+      centre: {on: hub, by: spigot, clearance: [2 um, 8 um], rests: pushed, runout: 3 um}
+      square: {on: seat, by: flange, face_runout: 4 um, across: 100}
+      stop:   {on: seat, error: 10 um}
+    head:   {tilt: 3deg 34' 35", uncertainty: 2', leans: nose-down, mid_plane: {found: after-tilt, error: 15 um}}
+    divide: {by: hole-circle, circle: 18, setting: 2"}
+    cut:    {teeth: {cutter: fly, depth: 3.3, passes: [2.0, 1.0, 0.3]}}
+  - op: 50
+    machine: lathe-A
+    looks_at_tool: -z
+    hold:
+      centre: {on: hub, by: four-jaw, runout: {at_most: 6 um, measured: 4 um, uncertainty: 1 um}}
+      square: {on: seat, by: parallels, face_runout: 4 um, across: 100}
+      stop:   {on: seat, error: 5 um}
+    cut: {bore: {}, back: {error: 8 um}}
+  - op: 70
+    join:
+      outer: wheel.bore
+      inner: spindle.journal
+      by: shrink
+      square: bore
+      stop: {on: wheel.back, against: spindle.shoulder, spacers: [{name: shim, length: 1.500 ±0.003}]}
+      heat: {hub: 180 degC, by: oven, oven_error: 10 degC}
+place:
+  axis: spindle.bearings
+  worm_axis: {from: spindle.shoulder, length: 13.500 ±0.020}
+require:
+  - {what: run-out, of: wheel.teeth, at_most: 30 um}
+"""
 JOURNAL = "diameter: 32.041 ±0.003"
 WARM = "diameter: {nominal: 32.041, lower: -0.003, upper: 0.003, measured: 32.045, uncertainty: 0.5 um, at_temperature: 30 degC}"
 
@@ -188,10 +267,10 @@ def test_a_backlash_without_the_end_float_is_named() -> None:
 
 
 def test_shims_that_were_measured_pass_and_shims_of_which_nothing_is_said_are_left_to_the_rule_of_the_hold() -> None:
-    old = "by: soft-jaws, at: 12, runout: 20 um}"
-    measured = changed((old, "by: shimmed-jaws, at: 12, runout: {measured: 20 um, uncertainty: 2 um}}"))
+    old = "by: soft-jaws, at: 5, runout: 20 um}"
+    measured = changed((old, "by: shimmed-jaws, at: 5, runout: {measured: 20 um, uncertainty: 2 um}}"))
     assert ["pass"] == [f.verdict for f in findings(measured, "MEASURE-003")]
-    silent = changed((old, "by: shimmed-jaws, at: 12}"))
+    silent = changed((old, "by: shimmed-jaws, at: 5}"))
     assert findings(silent, "MEASURE-003") == []
     assert "open" in [f.verdict for f in findings(silent, "HOLD-003")]
 
