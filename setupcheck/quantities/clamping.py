@@ -14,7 +14,8 @@ from setupcheck.quantities.holding import Held
 from setupcheck.quantities.requirements import read_stack
 from setupcheck.quantities.scopes import CutEntry, HoldEntry
 from setupcheck.quantities.shop import Floor
-from setupcheck.quantities.sized import material_of, tolerance
+from setupcheck.quantities.sized import tolerance
+from setupcheck.quantities.stuff import material_of
 
 CHUCKS = ("three-jaw", "four-jaw", "soft-jaws", "shimmed-jaws", "collet", "pot-chuck")
 """Devices from which a part stands out. Source: common practice."""

@@ -2,14 +2,9 @@
 
 from __future__ import annotations
 
-from typing import TYPE_CHECKING
-
 from setupcheck.jobfile.models import Dimension
 from setupcheck.quantities.book import Open, OutOfRange
 from setupcheck.quantities.shop import Floor
-
-if TYPE_CHECKING:
-    from setupcheck.physics.materials import Material
 
 
 def tolerance(size: Dimension) -> float | None:
@@ -32,6 +27,7 @@ def at_reference(size: Dimension, path: str, floor: Floor) -> tuple[float, float
     """
     from setupcheck.physics.heating import REFERENCE_TEMPERATURE
     from setupcheck.physics.measuring import size_at_reference
+    from setupcheck.quantities.stuff import material_of  # looks at facts, which look at the route
 
     assert size.measured is not None
     if size.at_temperature is None:
@@ -48,15 +44,3 @@ def at_reference(size: Dimension, path: str, floor: Floor) -> tuple[float, float
     except ValueError as why:
         raise OutOfRange(f"{path}.at_temperature: {why}") from None
     return min(ends), max(ends)
-
-
-def material_of(floor: Floor, part: str) -> Material | Open:
-    """The listed material of a part, or the key to fill. Source: rules/data/materials.yaml."""
-    from setupcheck.physics.materials import Material
-    from setupcheck.quantities.material_data import material
-
-    name, where = floor.loaded.job.parts[part].material, f"parts.{part}.material"
-    if name is None:
-        return Open((where,))
-    found = material(name)
-    return found if isinstance(found, Material) else Open((where,), found.because)

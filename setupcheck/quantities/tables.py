@@ -5,10 +5,15 @@ from __future__ import annotations
 from setupcheck.quantities import holds, judged
 from setupcheck.quantities.book import Quantity
 from setupcheck.quantities.clamping import CLAMP
+from setupcheck.quantities.cutter_shape import SHAPE
 from setupcheck.quantities.cutting import CUTTING
 from setupcheck.quantities.division import DIVIDE
+from setupcheck.quantities.head_setting import HEAD
 from setupcheck.quantities.joining import JOINING
+from setupcheck.quantities.joint_heat import HEAT
 from setupcheck.quantities.measuring import MEASURE
+from setupcheck.quantities.meshing import MESHING
+from setupcheck.quantities.strength import STRENGTH
 from setupcheck.quantities.tilting import TILT
 
 ROUTE = (
@@ -243,8 +248,13 @@ TABLES: tuple[Quantity, ...] = (
     *ALLOW,
     *DIVIDE,
     *TILT,
+    *HEAD,
     *JOINING,
+    *STRENGTH,
+    *HEAT,
     *CUTTING,
+    *SHAPE,
+    *MESHING,
     *PLACE,
     *CLAMP,
     *MEASURE,
