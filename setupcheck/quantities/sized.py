@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from setupcheck.jobfile.models import Dimension
-from setupcheck.quantities.book import Open, OutOfRange
+from setupcheck.quantities.book import Open
 from setupcheck.quantities.shop import Floor
 
 
@@ -42,5 +42,5 @@ def at_reference(size: Dimension, path: str, floor: Floor) -> tuple[float, float
             for alpha in (bounds.low, bounds.high)
         ]
     except ValueError as why:
-        raise OutOfRange(f"{path}.at_temperature: {why}") from None
+        return Open((f"{path}.at_temperature",), str(why))
     return min(ends), max(ends)

@@ -166,6 +166,8 @@ def test_a_part_too_hot_to_measure_is_open_with_the_reason() -> None:
     answer = found.book.get("fit.sizes", found.book.instances("join")[0])
     assert isinstance(answer, Open)
     assert "a part at 150 degC is outside -20 to 120 degC" in answer.because
+    assert ("parts.spindle.surfaces.journal.diameter.at_temperature",) == answer.missing
+    assert ["open"] == [f.verdict for f in found.evaluation.findings if f.rule == "FIT-001"]
 
 
 # -- how well it is measured
