@@ -45,7 +45,8 @@ def _within(node: object, path: str, owner: str, op: int | None) -> Iterator[Rea
         owner = next((x for key in _OWNERS if isinstance(x := getattr(node, key, None), str)), owner)
         owner = "the worm" if isinstance(node, Worm) else "the mesh" if isinstance(node, Mesh) else owner
         for name, field in type(node).model_fields.items():
-            yield from _within(getattr(node, name), f"{path}.{field.alias or name}", owner, op)
+            if name in node.model_fields_set:  # only what the file says
+                yield from _within(getattr(node, name), f"{path}.{field.alias or name}", owner, op)
     elif isinstance(node, Mapping):
         for name, entry in node.items():
             own = owner if isinstance(entry, Deviation | Dimension) else str(name)

@@ -248,3 +248,19 @@ def test_a_ring_on_its_shaft_is_no_ring() -> None:
         RING, ("machines:\n", shaft + "machines:\n"), ("require:\n", third + "require:\n"), ("front:   {kind", lip)
     )
     assert [20] == [f.op for f in findings(job, "CLAMP-003")]
+
+
+@pytest.mark.parametrize(("cored", "verdict"), [("144", "pass"), ("146", "warn")])
+def test_a_ring_held_from_inside_counts_with_the_outside_as_it_is_turned(cored: str, verdict: str) -> None:
+    inside = changed(RING, ("by: expanding-mandrel", "by: three-jaw"), ("diameter: 144", f"diameter: {cored}"))
+    found = [f for f in findings(inside, "CLAMP-003") if f.op == 10]
+    assert [verdict] == [f.verdict for f in found]
+    assert (180.0 - float(cored)) / 360.0 == pytest.approx(number(inside, "clamp.wall_share", "10/centre"))
+
+
+def test_a_holding_that_is_kept_counts_with_what_is_finished_later_in_it() -> None:
+    later = "cut: {bore: {state: rough, to: 149}, back: {error: 20 um, removes: [tube, cored]}}\n"
+    kept = "  - op: 30\n    machine: lathe-A\n    keeps: 20\n    cut: {bore: {}}\n"
+    job = changed(RING, ("cut: {bore: {}, back: {error: 20 um, removes: [tube, cored]}}\n", later + kept))
+    assert [20] == [f.op for f in findings(job, "CLAMP-003")]
+    assert 15.0 / 180.0 == pytest.approx(number(job, "clamp.wall_share", "20/centre"))
