@@ -23,6 +23,7 @@ from setupcheck.jobfile.types import (
     Angle,
     AngleBound,
     Bound,
+    Division,
     Expansion,
     Length,
     Limit,
@@ -48,7 +49,8 @@ class Shop(BaseModel):
 class Dimension(Shop):
     """A size with its limits or its measured value: `32 H6`, `32.041 ±0.003`, `{measured: 2.31 mm, uncertainty: 4 um}`.
 
-    lower, upper  deviations from `nominal` [mm]; `uncertainty` is expanded, k = 2
+    lower, upper    deviations from `nominal` [mm]; `uncertainty` is expanded, k = 2
+    at_temperature  of the part as it was measured, the gauge at 20 degC [degC]; the size is then brought back to 20 degC
     """
 
     nominal: Length | None = None
@@ -58,6 +60,7 @@ class Dimension(Shop):
     measured: Length | None = None
     uncertainty: Bound | None = None
     at: str | None = None
+    at_temperature: Temperature | None = None
 
     @model_validator(mode="before")
     @classmethod
@@ -101,6 +104,7 @@ class Deviation(Shop):
     high_at      where the metal comes nearest the probe: `tooth 14`, `90 deg`, `mark`, `jaw 2`, a surface's name
     device       what held or measured it; alone it takes its typical value
     mark         `kept`: the part goes back the same way round in the same device, so it is one cause in several setups
+    indicator    one division of the indicator that reads it [mm], at a hold
     """
 
     at_most: Bound | None = None
@@ -110,6 +114,7 @@ class Deviation(Shop):
     high_at: str | None = None
     device: str | None = None
     mark: Literal["kept", "lost"] | None = None
+    indicator: Division | None = None
 
     @model_validator(mode="before")
     @classmethod

@@ -15,7 +15,7 @@ from pydantic import BaseModel, TypeAdapter, ValidationError
 from pydantic_core import ErrorDetails
 
 from setupcheck.errors import JobError, Problem
-from setupcheck.jobfile import cuts, directions, given, joints, names, reach, sense
+from setupcheck.jobfile import cuts, directions, gauges, given, joints, names, reach, sense
 from setupcheck.jobfile.drawing import drawing_of
 from setupcheck.jobfile.models import Require, Surface
 from setupcheck.jobfile.setups import Job
@@ -144,7 +144,7 @@ def _contradictions(data: Mapping[str, Data], job: Job | None) -> Iterator[names
         asked = _readable(TypeAdapter(Require), enumerate(require) if isinstance(require, list) else (), units)
     yield from sense.contradictions(surfaces, asked, names.uses(data), units=units)
     drawing = drawing_of(data, surfaces, units)
-    for check in (reach.beyond, directions.nowhere, joints.misfits, cuts.misstated, given.repeated):
+    for check in (reach.beyond, directions.nowhere, joints.misfits, cuts.misstated, given.repeated, gauges.misplaced):
         yield from check(drawing)
 
 

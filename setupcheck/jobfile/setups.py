@@ -27,6 +27,7 @@ from setupcheck.jobfile.types import (
     AngleBound,
     Bound,
     Duration,
+    Force,
     Fraction,
     Length,
     Limit,
@@ -59,6 +60,8 @@ Device = Literal[
     "spindle",
     "steady",
 ]
+
+_JAWS = ("three-jaw", "four-jaw", "soft-jaws", "shimmed-jaws")
 
 
 class Through(Shop):
@@ -93,6 +96,7 @@ class Centre(Shop):
     runout     full indicator movement of the datum as trued, or of the mandrel, spigot or collet that carries it
     clearance  diametral play between datum and device; `rests` says how the part lies in it
     x, y       readings of an edge finder or indicator along two machine axes, each ±
+    grip       stretch of the surface that the jaws or the mandrel hold;  grip_force  of each jaw on the part [N]
     turned     where the part's mark stands from the device's mark
     """
 
@@ -105,8 +109,19 @@ class Centre(Shop):
     x: Bound | None = None
     y: Bound | None = None
     grip: Span | None = None
+    grip_force: Force | None = None
     through: tuple[Through, ...] = ()
     turned: Angle | None = None
+
+    @model_validator(mode="after")
+    def a_grip_force_is_that_of_one_jaw(self) -> Centre:
+        if self.grip_force is not None and self.by not in _JAWS:
+            raise ValueError(
+                f"grip_force is the force of one jaw, and {self.by} is not held by jaws. Drop it, or write by: three-jaw"
+            )
+        if self.grip_force == 0.0:
+            raise ValueError("a grip_force of nothing holds nothing. Write the force of one jaw, as in 2 kN")
+        return self
 
 
 class Square(Shop):

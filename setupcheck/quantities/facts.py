@@ -8,6 +8,7 @@ from dataclasses import dataclass
 from setupcheck.jobfile.names import Ref
 from setupcheck.jobfile.setups import Setup
 from setupcheck.quantities.book import Scope
+from setupcheck.quantities.readings import Reading
 from setupcheck.quantities.requirements import Stack, spoken
 from setupcheck.quantities.route import machine_of
 from setupcheck.quantities.scopes import CutEntry, HoldEntry
@@ -92,6 +93,8 @@ def _called(scope: Scope, field: str) -> str | None:
         return (
             node.entry.on if field == "surface" else f"op {scope.op}, {node.step.replace('_', ' ')} on {node.entry.on}"
         )
+    if isinstance(node, Reading):
+        return node.name
     if isinstance(node, CutEntry):
         return node.name
     return None

@@ -11,6 +11,7 @@ from setupcheck.ledger.account import Account
 from setupcheck.ledger.causes import Cause
 from setupcheck.quantities.book import Open, OutOfRange, Quantity
 from setupcheck.quantities.shop import Floor
+from setupcheck.quantities.sized import at_reference
 
 
 @dataclass(frozen=True, slots=True)
@@ -24,15 +25,16 @@ class JointSizes:
     journal_high: float
 
 
-def limits_of(given: Dimension, path: str) -> tuple[float, float] | Open:
-    """Smallest and largest size [mm]: as measured, by its limits, or by its ISO 286 class.
+def limits_of(given: Dimension, path: str, floor: Floor) -> tuple[float, float] | Open:
+    """Smallest and largest size [mm]: as measured (brought back to 20 degC), by its limits, or by its ISO 286 class.
 
     Source: the job file; ISO 286 tables in rules/data (each row with its own source).
     """
     if given.measured is not None:
         if given.uncertainty is None:
             return Open((f"{path}.uncertainty",))
-        return given.measured - given.uncertainty, given.measured + given.uncertainty
+        cold = at_reference(given, path, floor)
+        return cold if isinstance(cold, Open) else (cold[0] - given.uncertainty, cold[1] + given.uncertainty)
     assert given.nominal is not None
     if given.lower is not None or given.upper is not None:
         return given.nominal + (given.lower or 0.0), given.nominal + (given.upper or 0.0)
@@ -55,7 +57,7 @@ def sizes(floor: Floor, join: Join) -> JointSizes | Open | None:
         if node is None:
             return None
         nominal = nominal or node.diameter.value
-        limits = limits_of(node.diameter, f"parts.{ref.part}.surfaces.{ref.surface}.diameter")
+        limits = limits_of(node.diameter, f"parts.{ref.part}.surfaces.{ref.surface}.diameter", floor)
         if isinstance(limits, Open):
             opened.append(limits)
         else:

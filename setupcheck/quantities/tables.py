@@ -5,12 +5,14 @@ from __future__ import annotations
 from setupcheck.quantities import holds, judged
 from setupcheck.quantities.advice import ADVICE
 from setupcheck.quantities.book import Quantity
+from setupcheck.quantities.clamping import CLAMP
 from setupcheck.quantities.cutter_shape import SHAPE
 from setupcheck.quantities.cutting import CUTTING
 from setupcheck.quantities.division import DIVIDE
 from setupcheck.quantities.head_setting import HEAD
 from setupcheck.quantities.joining import JOINING
 from setupcheck.quantities.joint_heat import HEAT
+from setupcheck.quantities.measuring import MEASURE
 from setupcheck.quantities.meshing import MESHING
 from setupcheck.quantities.placing import PLACE
 from setupcheck.quantities.strength import STRENGTH
@@ -245,4 +247,6 @@ TABLES: tuple[Quantity, ...] = (
     *MESHING,
     *PLACE,
     *ADVICE,
+    *CLAMP,
+    *MEASURE,
 )

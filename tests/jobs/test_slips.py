@@ -146,8 +146,8 @@ SLIPS: dict[tuple[str, str], tuple[Slip, ...]] = {
         Slip(
             PLATE,
             20,
-            "by: soft-jaws, runout: 1 thou}",
-            "by: soft-jaws, runout: {measured: 1 thou, uncertainty: 0.2 thou, high_at: jaw 3}}",
+            "by: soft-jaws, runout: 1 thou,",
+            "by: soft-jaws, runout: {measured: 1 thou, uncertainty: 0.2 thou, high_at: jaw 3},",
         ),
     ),
     ("HOLD-009", "no machine named"): (
@@ -188,6 +188,46 @@ SLIPS: dict[tuple[str, str], tuple[Slip, ...]] = {
     ("CUTTER-002", "a last pass too thick to finish with"): (
         Slip(WHEEL, 40, "passes: [2.0, 1.0, 0.3]", "passes: [2.0, 0.5, 0.8]"),
         Slip(GEAR, 40, "passes: [3.1, 0.3]", "passes: [2.4, 1.0]"),
+    ),
+    ("CLAMP-001", "the jaws catch too little of the part"): (
+        Slip(WHEEL, 10, "grip: {from: -40, to: -5}", "grip: {from: -40, to: -30}"),
+        Slip(PLATE, 20, "grip: {from: 0.15, to: 0.55}", "grip: {from: 0.15, to: 0.3}"),
+    ),
+    ("MEASURE-001", "a measured spindle or face, and nobody says how well"): (
+        Slip(
+            WHEEL,
+            30,
+            "stop:   {on: back, error: 20 um}",
+            "stop:   {on: back, error: {measured: 20 um}}",
+        ),
+        Slip(
+            PLATE,
+            30,
+            "square: {on: back, by: table, face_runout: 0.3 thou, across: 5}",
+            "square: {on: back, by: table, face_runout: {measured: 0.3 thou}, across: 5}",
+        ),
+    ),
+    ("MEASURE-002", "a gauge too coarse for what it has to prove"): (
+        Slip(WHEEL, 50, "measured: 4 um, uncertainty: 1 um", "measured: 4 um, uncertainty: 3 um"),
+        Slip(
+            GEAR,
+            20,
+            "by: expanding-mandrel, runout: 10 um}",
+            "by: expanding-mandrel, runout: {at_most: 10 um, measured: 4 um, uncertainty: 5 um}}",
+        ),
+    ),
+    ("MEASURE-003", "jaws over shims that nobody measured"): (
+        Slip(WHEEL, 20, "by: soft-jaws, at: 12, runout: 20 um}", "by: shimmed-jaws, at: 12, runout: 20 um}"),
+        Slip(PLATE, 20, "by: soft-jaws, runout: 1 thou,", "by: shimmed-jaws, runout: {device: shimmed-jaws},"),
+    ),
+    ("MEASURE-007", "an indicator too coarse for the plan"): (
+        Slip(WHEEL, 40, "rests: pushed, runout: 3 um}", "rests: pushed, runout: {at_most: 3 um, indicator: 10 um}}"),
+        Slip(
+            PLATE,
+            30,
+            "by: indicator, runout: 0.2 thou}",
+            "by: indicator, runout: {at_most: 0.2 thou, indicator: 0.5 thou}}",
+        ),
     ),
     ("DIVIDE-003", "nothing said of the dividing device"): (
         Slip(WHEEL, 40, 'wheel: {once_per_turn: ±10"}, worm: {once_per_crank: ±4"}, setting: 2"}', "}"),

@@ -166,6 +166,21 @@ QUANTITIES: Mapping[str, FakeQuantity] = {
         FakeQuantity("tilt.belongs_to", "setup", "", 0),
         FakeQuantity("tilt.lean", "setup", "", 0),
         FakeQuantity("place.nominal_gap", "place", "um", 1),
+        FakeQuantity("clamp.grip", "hold", "mm", 1),
+        FakeQuantity("clamp.grip_wanted", "hold", "mm", 1),
+        FakeQuantity("clamp.overhang", "cut", "1", 2),
+        FakeQuantity("clamp.wall_share", "hold", "%", 1),
+        FakeQuantity("clamp.lobing", "hold", "um", 1),
+        FakeQuantity("clamp.lobing_allowed", "hold", "um", 1),
+        FakeQuantity("measure.uncertainty_stated", "reading", "", 0),
+        FakeQuantity("measure.share", "reading", "%", 0),
+        FakeQuantity("measure.tolerance", "reading", "um", 1),
+        FakeQuantity("measure.warm_by", "reading", "um", 1),
+        FakeQuantity("measure.shims", "hold", "", 0),
+        FakeQuantity("measure.thread", "setup", "", 0),
+        FakeQuantity("measure.end_float", "stack", "", 0),
+        FakeQuantity("measure.planned", "hold", "um", 1),
+        FakeQuantity("measure.half_division", "hold", "um", 1),
     )
 }
 """The quantities that the shipped rules name, written down once more so that a change on one side is noticed."""
