@@ -8,7 +8,6 @@ shown and never judged.
 from __future__ import annotations
 
 import math
-from dataclasses import dataclass
 
 import numpy as np
 from numpy.typing import NDArray
@@ -18,6 +17,7 @@ from setupcheck.ledger.account import Account
 from setupcheck.ledger.causes import TRUNCATION, TRUNCATION_2D, Cause, stream_key
 from setupcheck.ledger.figures import Figure, Push
 from setupcheck.ledger.route import Pattern, Scatter
+from setupcheck.record import record
 
 Reals = NDArray[np.floating]
 Complexes = NDArray[np.complexfloating]
@@ -177,7 +177,7 @@ def _cut_rayleigh(rng: np.random.Generator, n: int) -> Reals:
     return np.asarray(np.sqrt(np.float32(-2.0) * np.log1p(-share)))
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Ends:
     """A figure's two ends; figures that start at zero have `low` = 0."""
 
@@ -185,7 +185,7 @@ class Ends:
     high: float
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Share:
     """One cause's part in a figure: the most it can move it towards the nearer limit, and that as a share of all."""
 
@@ -194,7 +194,7 @@ class Share:
     share: float
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Combined:
     """One figure, combined. All in the figure's base unit; `chance` is None where no limit is stated.
 

@@ -7,7 +7,7 @@ at its known value (`base`), and its value for a set of draws (`sample`). worst 
 from __future__ import annotations
 
 import math
-from dataclasses import dataclass, field
+from dataclasses import field
 from typing import TYPE_CHECKING, Protocol
 
 import numpy as np
@@ -17,6 +17,7 @@ from setupcheck.ledger import teeth
 from setupcheck.ledger.account import Account
 from setupcheck.ledger.causes import Cause
 from setupcheck.ledger.route import Pattern
+from setupcheck.record import record
 
 if TYPE_CHECKING:
     from setupcheck.ledger.combine import Draws
@@ -24,7 +25,7 @@ if TYPE_CHECKING:
 Reals = NDArray[np.floating]
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Push:
     """How far one cause can move a figure, in the figure's unit: down by `down`, up by `up`.
 
@@ -89,7 +90,7 @@ def merged(*lists: list[Push]) -> list[Push]:
     return list(total.values())
 
 
-@dataclass(frozen=True, slots=True, eq=False)
+@record(eq=False)
 class Vector:
     """factor times the largest of |account|: run-out (2), face run-out (across), coaxial (2), squareness (1 or across)."""
 
@@ -116,7 +117,7 @@ class Vector:
         return np.asarray(values * self.factor)
 
 
-@dataclass(frozen=True, slots=True, eq=False)
+@record(eq=False)
 class Length:
     """A signed axial distance or deviation [mm], the nominal distance included."""
 
@@ -136,7 +137,7 @@ class Length:
         return draws.real(self.account)
 
 
-@dataclass(frozen=True, slots=True, eq=False)
+@record(eq=False)
 class Stock:
     """Radial stock left at the worst place round the part [mm]: depth - largest |offset| at the ends of the cut.
 
@@ -163,7 +164,7 @@ class Stock:
         return np.asarray(self.depth - self._vector().sample(draws))
 
 
-@dataclass(frozen=True, slots=True, eq=False)
+@record(eq=False)
 class MidPlane:
     """Distance of the tooth mid-plane from where it belongs, worst tooth [mm]: max over j of |a - Re(conj(t) r e^(i theta_j))|.
 
@@ -197,7 +198,7 @@ class MidPlane:
         return np.asarray(np.maximum(np.abs(axial - r * high), np.abs(axial - r * low)))
 
 
-@dataclass(frozen=True, slots=True, eq=False)
+@record(eq=False)
 class Tooth:
     """A figure of the division of teeth, gaps or holes.
 
@@ -297,7 +298,7 @@ class Tooth:
         return ranges, steps
 
 
-@dataclass(frozen=True, slots=True, eq=False)
+@record(eq=False)
 class ToothRunOut:
     """Run-out of gaps or holes that also scatter outwards: factor (max - min over j of e cos(phi - theta_j) + r_j).
 
@@ -325,7 +326,7 @@ class ToothRunOut:
         return np.asarray(teeth.ranges(places) * self.factor)
 
 
-@dataclass(frozen=True, slots=True, eq=False)
+@record(eq=False)
 class FaceStock:
     """Axial stock left on a face where the cut is thinnest [mm]: depth - radius |lean between old and new face|.
 

@@ -16,13 +16,13 @@ from __future__ import annotations
 
 import cmath
 import math
-from dataclasses import dataclass
 
 import numpy as np
 from numpy.typing import NDArray
 
 from setupcheck.ledger.account import Account
 from setupcheck.ledger.route import Pattern
+from setupcheck.record import record
 
 Reals = NDArray[np.floating]
 Complexes = NDArray[np.complexfloating]
@@ -165,7 +165,7 @@ def largest_steps(arcs: Reals) -> Reals:
     return np.asarray(np.maximum(between, np.abs(arcs[:, 0] - arcs[:, -1])))
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Gain:
     """Worst-case factor of each kind of error on one tooth figure (figure per unit of error)."""
 

@@ -2,16 +2,15 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
-
 from setupcheck.jobfile.models import Dimension, Round
 from setupcheck.jobfile.names import Ref
 from setupcheck.jobfile.setups import Join
 from setupcheck.quantities.book import Open, OutOfRange, Quantity
 from setupcheck.quantities.shop import Floor
+from setupcheck.record import record
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class JointSizes:
     """Smallest and largest diameters of both surfaces of a joint [mm], and the nominal one."""
 

@@ -2,14 +2,13 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
-
 from setupcheck.jobfile.models import Require
 from setupcheck.jobfile.sense import limit_kind
 from setupcheck.quantities.shop import Floor
+from setupcheck.record import record
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Stack:
     """One requirement with its instance name and how it is shown.
 

@@ -4,7 +4,6 @@ from __future__ import annotations
 
 import math
 from collections.abc import Callable
-from dataclasses import dataclass
 
 from setupcheck.jobfile.names import Ref
 from setupcheck.ledger import figures, route, teeth
@@ -15,12 +14,13 @@ from setupcheck.quantities.book import Open
 from setupcheck.quantities.causes import Entry, size_error
 from setupcheck.quantities.requirements import Stack
 from setupcheck.quantities.shop import Floor
+from setupcheck.record import record
 
 NOT_YET = ("backlash", "contact-length", "contact-area", "torque")
 """Figures a job file may ask for that this version does not compute; their findings are open."""
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Built:
     """A stack's figure, with the levers its first-order treatment rests on.
 

@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 from collections.abc import Iterator, Mapping, Sequence
-from dataclasses import dataclass
 from itertools import groupby
 
 from pydantic import BaseModel
@@ -12,6 +11,7 @@ from setupcheck.jobfile.models import Flat, Part, Pattern, Round, Throat
 from setupcheck.jobfile.reading import LoadedJob
 from setupcheck.jobfile.setups import Head, Join, Setup
 from setupcheck.quantities.tilting import cuts_the_wheel
+from setupcheck.record import record
 from setupcheck.report.written import written
 
 NOT_LOOKED_AT: Mapping[str, Mapping[str, str]] = {
@@ -71,7 +71,7 @@ _COUNTS = ("tool_change_after",)
 """Keys whose bare number is no length."""
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Uncomputed:
     """One thing stated and not looked at: its path and line in the job file, whose it is, and what it says."""
 
@@ -105,9 +105,9 @@ def _all(loaded: LoadedJob) -> Iterator[Uncomputed]:
         yield _one(loaded, "room", "job", "room temperature {said}")
     for name, part in job.parts.items():
         yield from _part(loaded, name, part)
-    for record, path in ((job.worm, "worm"), (job.mesh, "mesh")):
-        if record is not None:
-            yield from _entries(loaded, record, path, path)
+    for entry, path in ((job.worm, "worm"), (job.mesh, "mesh")):
+        if entry is not None:
+            yield from _entries(loaded, entry, path, path)
     for name, cutter in job.cutters.items():
         yield from _entries(loaded, cutter, f"cutters.{name}", f"cutter {name}")
     leaning = {s.machine for s in job.setups if cuts_the_wheel(loaded, s)}
