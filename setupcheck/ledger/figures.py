@@ -267,35 +267,25 @@ class Tooth:
         return tuple(dict.fromkeys((*self.offset.undetermined(), *self.oblique.undetermined(), *mine)))
 
     def sample(self, draws: Draws) -> Reals:
-        ranges, steps = self._ranges_and_steps(draws)
-        return np.asarray((steps if self.stepwise else ranges) * self.factor)
+        return np.asarray(self._over_the_turn(draws) * self.factor)
 
     def _has_radial(self) -> bool:
         return any(s.along == "radial" for s in self.pattern.scatter)
 
-    def _ranges_and_steps(self, draws: Draws) -> tuple[Reals, Reals]:
-        """Range and largest step of the worse flank for all trials [mm]; figures of one ring share them."""
+    def _over_the_turn(self, draws: Draws) -> Reals:
+        """Range or largest step of the worse flank for all trials [mm]; figures of one ring share it."""
         waves = [self._wave(side) for side in self._sides()]
         terms = frozenset((i, c.identity, a, b) for i, w in enumerate(waves) for c, (a, b) in w.terms.items())
-        key = (id(self.pattern), tuple(w.constant for w in waves), terms)
+        key = (self.stepwise, id(self.pattern), tuple(w.constant for w in waves), terms)
         found = draws.memo.get(key)
-        if found is not None:
-            return found
-        vectors, arcs = [draws.account(w) * -1j for w in waves], draws.arcs(self.pattern)
-        deep = draws.radials(self.pattern) * np.float32(self._deeper()) if self._has_radial() else None
-        places = teeth.angles(self.pattern)
-        ranges, steps = np.zeros(draws.trials, np.float32), np.zeros(draws.trials, np.float32)
-        block = max(1, teeth.BLOCK // self.pattern.count)
-        for start in range(0, draws.trials, block):
-            now = slice(start, start + block)
-            for side, vector in zip(self._sides(), vectors, strict=True):
-                flank = teeth.waves(vector[now], places) + arcs[now]
-                if deep is not None:
-                    flank += np.float32(side) * deep[now]
-                ranges[now] = np.maximum(ranges[now], teeth.ranges(flank))
-                steps[now] = np.maximum(steps[now], teeth.largest_steps(flank))
-        draws.memo[key] = ranges, steps
-        return ranges, steps
+        if found is None:
+            figure = teeth.largest_steps if self.stepwise else teeth.ranges
+            places, arcs = teeth.angles(self.pattern), draws.arcs(self.pattern)
+            deep = draws.radials(self.pattern) * np.float32(self._deeper()) if self._has_radial() else None
+            own = [arcs if deep is None else arcs + np.float32(side) * deep for side in self._sides()]
+            found = teeth.figure_of(figure, [draws.account(w) * -1j for w in waves], places, own)
+            draws.memo[key] = found
+        return found
 
 
 @record(eq=False)
@@ -322,8 +312,8 @@ class ToothRunOut:
         return self.offset.undetermined()
 
     def sample(self, draws: Draws) -> Reals:
-        places = teeth.waves(draws.account(self.offset), teeth.angles(self.pattern)) + draws.radials(self.pattern)
-        return np.asarray(teeth.ranges(places) * self.factor)
+        around, radials = teeth.angles(self.pattern), draws.radials(self.pattern)
+        return np.asarray(teeth.figure_of(teeth.ranges, [draws.account(self.offset)], around, [radials]) * self.factor)
 
 
 @record(eq=False)
