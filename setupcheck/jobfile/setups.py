@@ -1,8 +1,7 @@
 """The models of a setup: hold, head, divide, cut, join; and the job that holds everything. Sizes mm, angles rad."""
 
-from __future__ import annotations
-
-from typing import Annotated, Literal
+# Annotations are evaluated as they stand (no __future__ import): pydantic would have to compile each of them from its text.
+from typing import Annotated, Literal, Self
 
 from pydantic import BeforeValidator, Field, ValidationInfo, WithJsonSchema, model_validator
 
@@ -80,7 +79,7 @@ class Span(Shop):
     high: Length = Field(alias="to")
 
     @model_validator(mode="after")
-    def it_has_a_length(self, info: ValidationInfo) -> Span:
+    def it_has_a_length(self, info: ValidationInfo) -> Self:
         if self.high <= self.low:
             low, high = in_file_units(self.low, info), in_file_units(self.high, info)
             raise ValueError(f"it runs from {low} to {high}. Write from: below to:")
@@ -119,7 +118,7 @@ class Square(Shop):
     chip: Bound | None = None
 
     @model_validator(mode="after")
-    def a_reading_has_its_circle(self) -> Square:
+    def a_reading_has_its_circle(self) -> Self:
         if (self.face_runout is not None or self.chip is not None) and self.across is None:
             raise ValueError(
                 "face_runout needs the circle it is read on. Write across: and the diameter of that circle"
@@ -331,7 +330,7 @@ class Setup(Shop):
     join: Join | None = None
 
     @model_validator(mode="after")
-    def it_cuts_or_joins(self) -> Setup:
+    def it_cuts_or_joins(self) -> Self:
         if self.join is not None and (self.cut or self.hold is not None or self.keeps is not None):
             raise ValueError("a setup either joins two parts or holds and cuts one. Make two setups of it")
         if self.join is None and not self.cut:
