@@ -64,7 +64,7 @@ def test_wrong_arguments_are_refused_at_the_first_call_too() -> None:
         with pytest.raises(TypeError, match="unexpected keyword argument 'nmae'"):
             Fresh(nmae="x")  # type: ignore[call-arg]
         with pytest.raises(TypeError):
-            Named("x")  # type: ignore[misc]
+            Named("x")  # type: ignore[call-arg]
     assert Named(name="x") == Named(name="x", size=1)
 
 
@@ -82,7 +82,7 @@ def test_nothing_changes_a_record() -> None:
 
 def test_equality_and_hash_go_by_the_fields_unless_asked_otherwise() -> None:
     assert Named(name="a") != Named(name="b")
-    assert Named(name="a") != ("a", 1)
+    assert Named(name="a") != ("a", 1)  # type: ignore[comparison-overlap]
     assert len({Named(name="a"), Named(name="a"), Named(name="b")}) == 2
     assert Alone("a") != Alone("a")
     assert len({Alone("a"), Alone("a")}) == 2
