@@ -27,6 +27,7 @@ BYTECODE = tempfile.TemporaryDirectory()
 ENVIRONMENT = {k: v for k, v in os.environ.items() if k != "PYTHONDONTWRITEBYTECODE"} | {
     "PYTHONPATH": str(ROOT),
     "PYTHONPYCACHEPREFIX": BYTECODE.name,
+    "OPENBLAS_NUM_THREADS": "1",  # on a busy machine the start of a second thread doubles the time of the imports
 }
 sys.path.insert(0, str(ROOT))
 
