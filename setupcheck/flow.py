@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
-from dataclasses import dataclass, field
+from dataclasses import field
 from functools import cache
 from pathlib import Path
 from typing import TYPE_CHECKING
@@ -17,6 +17,7 @@ from setupcheck.quantities.route import walk
 from setupcheck.quantities.scopes import scopes
 from setupcheck.quantities.shop import Floor
 from setupcheck.quantities.tables import TABLES
+from setupcheck.record import record
 from setupcheck.rulebook import (
     Answer,
     Evaluation,
@@ -36,7 +37,7 @@ if TYPE_CHECKING:
     from setupcheck.rulebook.house import House
 
 
-@dataclass(frozen=True, slots=True, eq=False)
+@record(eq=False)
 class Review:
     """Everything one review found.
 

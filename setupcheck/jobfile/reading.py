@@ -6,7 +6,6 @@ import hashlib
 import re
 from collections.abc import Iterable, Iterator, Mapping, Sequence
 from contextlib import suppress
-from dataclasses import dataclass
 from pathlib import Path
 from types import UnionType
 from typing import Annotated, Literal, TypeVar, Union, get_args, get_origin
@@ -20,6 +19,7 @@ from setupcheck.jobfile.drawing import drawing_of
 from setupcheck.jobfile.models import Require, Surface
 from setupcheck.jobfile.setups import Job
 from setupcheck.notation import Units, nearest, plain, quoted
+from setupcheck.record import record
 from setupcheck.yamlfile import Data, Place, Tree, parse, read_text
 
 Loc = tuple[str | int, ...]
@@ -27,7 +27,7 @@ K = TypeVar("K", str, int)
 T = TypeVar("T")
 
 
-@dataclass(frozen=True, slots=True, eq=False)
+@record(eq=False)
 class LoadedJob:
     """A job with the places of its entries.
 

@@ -1,8 +1,7 @@
 """The models of a setup: hold, head, divide, cut, join; and the job that holds everything. Sizes mm, angles rad."""
 
-from __future__ import annotations
-
-from typing import Annotated, Literal
+# Annotations are evaluated as they stand (no __future__ import): pydantic would have to compile each of them from its text.
+from typing import Annotated, Literal, Self
 
 from pydantic import BeforeValidator, Field, ValidationInfo, WithJsonSchema, model_validator
 
@@ -83,7 +82,7 @@ class Span(Shop):
     high: Length = Field(alias="to")
 
     @model_validator(mode="after")
-    def it_has_a_length(self, info: ValidationInfo) -> Span:
+    def it_has_a_length(self, info: ValidationInfo) -> Self:
         if self.high <= self.low:
             low, high = in_file_units(self.low, info), in_file_units(self.high, info)
             raise ValueError(f"it runs from {low} to {high}. Write from: below to:")
@@ -114,7 +113,7 @@ class Centre(Shop):
     turned: Angle | None = None
 
     @model_validator(mode="after")
-    def a_grip_force_is_that_of_one_jaw(self) -> Centre:
+    def a_grip_force_is_that_of_one_jaw(self) -> Self:
         if self.grip_force is not None and self.by not in _JAWS:
             raise ValueError(
                 f"grip_force is the force of one jaw, and {self.by} is not held by jaws. Drop it, or write by: three-jaw"
@@ -134,7 +133,7 @@ class Square(Shop):
     chip: Bound | None = None
 
     @model_validator(mode="after")
-    def a_reading_has_its_circle(self) -> Square:
+    def a_reading_has_its_circle(self) -> Self:
         if (self.face_runout is not None or self.chip is not None) and self.across is None:
             raise ValueError(
                 "face_runout needs the circle it is read on. Write across: and the diameter of that circle"
@@ -343,7 +342,7 @@ class Join(Shop):
     serves_at: Service | None = None
 
     @model_validator(mode="after")
-    def it_carries_a_torque_and_a_force(self) -> Join:
+    def it_carries_a_torque_and_a_force(self) -> Self:
         for key, kind, example in (("torque", "torque", "40 N m"), ("axial_force", "force", "800 N")):
             given = (self.must_carry or {}).get(key)  # type: ignore[call-overload]
             if given is not None and (given.dimension != kind or given.value < 0.0):
@@ -367,7 +366,7 @@ class Setup(Shop):
     join: Join | None = None
 
     @model_validator(mode="after")
-    def it_cuts_or_joins(self) -> Setup:
+    def it_cuts_or_joins(self) -> Self:
         if self.join is not None and (self.cut or self.hold is not None or self.keeps is not None):
             raise ValueError("a setup either joins two parts or holds and cuts one. Make two setups of it")
         if self.join is None and not self.cut:

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import cmath
 import math
-from dataclasses import dataclass, replace
+from dataclasses import replace
 
 from setupcheck.jobfile.models import Deviation, Dimension
 from setupcheck.ledger.account import Account, face_reading_to_lean, fim_to_eccentricity
@@ -12,9 +12,10 @@ from setupcheck.ledger.causes import Cause, Law
 from setupcheck.ledger.route import part_vector
 from setupcheck.notation import NotationError, angle, show
 from setupcheck.quantities.typical import typical
+from setupcheck.record import record
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Towards:
     """A direction, if one is known: `angle` [rad] in the part frame, or in the machine's (`of_machine`).
 
@@ -26,7 +27,7 @@ class Towards:
     why: str = "unknown"
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Turned:
     """How the part lies in the machine: sense and the angle of its mark from the machine's mark [rad]."""
 
@@ -37,7 +38,7 @@ class Turned:
         return part_vector(vector, sg=self.sg, inserted_at=self.inserted_at)
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Entry:
     """Where an error entry stands: its name in shop words, operation, path, and the device it falls back on.
 

@@ -2,8 +2,6 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
-
 from setupcheck.jobfile.models import Round
 from setupcheck.jobfile.names import Ref
 from setupcheck.jobfile.setups import Centre, Cut, Setup
@@ -16,6 +14,7 @@ from setupcheck.quantities.scopes import CutEntry, HoldEntry
 from setupcheck.quantities.shop import Floor
 from setupcheck.quantities.sized import tolerance
 from setupcheck.quantities.stuff import material_of
+from setupcheck.record import record
 
 CHUCKS = ("three-jaw", "four-jaw", "soft-jaws", "shimmed-jaws", "collet", "pot-chuck")
 """Devices from which a part stands out. Source: common practice."""
@@ -28,7 +27,7 @@ _KEPT_ROUND = ("cylinder", "bore", "taper", "throat", "teeth")
 """Surfaces that are to be round when the jaws are opened."""
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Ring:
     """A ring between jaws as the holding leaves it: outside and inside diameter, length of the gripped surface [mm]."""
 

@@ -3,13 +3,13 @@
 from __future__ import annotations
 
 import math
-from dataclasses import dataclass
 
 from setupcheck.jobfile.models import Round, Throat
 from setupcheck.quantities.book import Open, OutOfRange, Quantity
 from setupcheck.quantities.drive import WheelCut, drive, wheel_cut
 from setupcheck.quantities.scopes import CutEntry
 from setupcheck.quantities.shop import Floor
+from setupcheck.record import record
 from setupcheck.worm import cutter as fly
 from setupcheck.worm.geometry import fewest_teeth
 
@@ -17,7 +17,7 @@ USUAL_FILM = 0.006
 """Thickness of marking blue that a contact share is told for where no requirement says one [mm]. Common practice, 5 to 7 um."""
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Shape:
     """Second-order shape of the flank that the cutter leaves: crowning A and twist B [1/mm], ends of the face."""
 

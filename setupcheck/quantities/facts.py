@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 import re
-from dataclasses import dataclass
 
 from setupcheck.jobfile.names import Ref
 from setupcheck.jobfile.setups import Setup
@@ -13,6 +12,7 @@ from setupcheck.quantities.requirements import Stack, spoken
 from setupcheck.quantities.route import machine_of
 from setupcheck.quantities.scopes import CutEntry, HoldEntry
 from setupcheck.quantities.shop import Floor
+from setupcheck.record import record
 
 FAMILIES = (
     ("copper-alloy", r"cu|cc\d|c[1-9]\d{4}|bronze|brass|gunmetal|rg\d|sae 6\d"),
@@ -23,7 +23,7 @@ FAMILIES = (
 """How names of materials begin, and what they are: EN, UNS and trade names. Source: common designations, from memory."""
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class UnknownFact:
     """A fact the job could state and does not; `path` is the key to fill."""
 

@@ -2,8 +2,6 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
-
 from setupcheck.jobfile.models import Dimension, Round
 from setupcheck.jobfile.names import Ref
 from setupcheck.jobfile.setups import Join
@@ -12,9 +10,10 @@ from setupcheck.ledger.causes import Cause
 from setupcheck.quantities.book import Open, OutOfRange, Quantity
 from setupcheck.quantities.shop import Floor
 from setupcheck.quantities.sized import at_reference
+from setupcheck.record import record
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class JointSizes:
     """Smallest and largest diameters of both surfaces of a joint [mm], and the nominal one."""
 

@@ -2,8 +2,6 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
-
 from setupcheck.ledger.combine import Combined, Draws, combine
 from setupcheck.ledger.figures import Figure
 from setupcheck.quantities.book import Open
@@ -12,12 +10,13 @@ from setupcheck.quantities.requirements import Stack
 from setupcheck.quantities.scopes import CutEntry
 from setupcheck.quantities.shop import Floor
 from setupcheck.quantities.stacks import build, stock_left
+from setupcheck.record import record
 
 THINNEST_CUT = 0.02
 """Radial stock a turning tool still cuts rather than rubs [mm]. Source: our screening choice; say `finishing_cut` at the cut."""
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Result:
     """One stack, combined: what rules, gates and remedies look at."""
 

@@ -2,19 +2,18 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
-
 from setupcheck.jobfile.setups import Join, Setup
 from setupcheck.notation import show
 from setupcheck.quantities.book import Open, Quantity
 from setupcheck.quantities.drive import middle
 from setupcheck.quantities.shop import Floor
+from setupcheck.record import record
 
 PLAIN = 0.0005
 """Offsets below this need no other shim [mm]. Source: our screening choice, half a micrometre."""
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Shim:
     """A stop of a joint with its spacers as they are and as they should be [mm].
 

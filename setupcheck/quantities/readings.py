@@ -3,19 +3,19 @@
 from __future__ import annotations
 
 from collections.abc import Iterator, Mapping
-from dataclasses import dataclass
 
 from pydantic import BaseModel
 
 from setupcheck.jobfile.models import Deviation, Dimension, Mesh, Worm
 from setupcheck.jobfile.setups import Job
+from setupcheck.record import record
 
 _WORDS = {"runout": "run-out", "face_runout": "face run-out", "axis_runout": "axis run-out"}
 _OWNERS = ("on", "of", "name", "outer")
 """Keys by which a record says whose its entries are."""
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Reading:
     """One measured value: its record, its path, how it is called, and the operation it belongs to."""
 

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import math
 from collections.abc import Iterator, Mapping
-from dataclasses import dataclass, replace
+from dataclasses import replace
 
 from setupcheck.errors import JobError
 from setupcheck.jobfile.models import Deviation, Dimension
@@ -30,12 +30,13 @@ from setupcheck.quantities.requirements import read_stack
 from setupcheck.quantities.route import walk
 from setupcheck.quantities.shop import Floor
 from setupcheck.quantities.stacks import build
+from setupcheck.record import record
 
 LEAST_KEPT = 0.2
 """Share of a bound that better work leaves when one change is not enough. Source: our screening choice."""
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Change:
     """One entry of the job file and the value that would do.
 
@@ -51,7 +52,7 @@ class Change:
     also: tuple[str, ...] = ()
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Stated:
     """What an entry of the job file says: its value now, the guard its uncertainty adds, and the least it can be."""
 
@@ -96,7 +97,7 @@ def stated(loaded: LoadedJob, path: str) -> Stated | None:
     return None
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Swap:
     """Another datum for one hold: hold operation `op` on `on`, as operation `like` does.
 
@@ -112,7 +113,7 @@ class Swap:
     cures: tuple[int, ...]
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Remedy:
     """What to change: single entries, the datum of one hold, or a shim. All empty where nothing simple does it."""
 

@@ -2,17 +2,16 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
-
 from setupcheck.jobfile.models import Deviation
 from setupcheck.jobfile.setups import Centre, Clock, Cut, Setup, Square, Stop
 from setupcheck.quantities.book import Scope
 from setupcheck.quantities.readings import readings
 from setupcheck.quantities.requirements import Stack, read_stack
 from setupcheck.quantities.shop import Floor
+from setupcheck.record import record
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class HoldEntry:
     """One entry of a hold: `30/centre`. `error` is its main error entry, None where it has none."""
 
@@ -29,7 +28,7 @@ class HoldEntry:
         return getattr(self.entry, self.key, None)
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class CutEntry:
     """One surface cut in one setup: `30/teeth`."""
 

@@ -2,16 +2,16 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
 from functools import cache
 
 from setupcheck.errors import SetupcheckError
 from setupcheck.notation import length
+from setupcheck.record import record
 from setupcheck.shipped import shipped
 from setupcheck.yamlfile import parse, read_text
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Typical:
     """One typical value [mm] and how good it is."""
 

@@ -3,9 +3,10 @@
 from __future__ import annotations
 
 from collections.abc import Iterable, Sequence
-from dataclasses import dataclass, replace
+from dataclasses import replace
 from typing import TYPE_CHECKING
 
+from setupcheck.record import record
 from setupcheck.rulebook import cautions as safety
 from setupcheck.rulebook.answers import unanswered_entries
 from setupcheck.rulebook.facts import applies
@@ -153,7 +154,7 @@ def _judged(
     return _spoken(blank, rule, judgement.verdict, names, at)
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class _Beside:
     """What a rule reads beside value and limit: the uncertainty of a measured value, the chance of a planned one."""
 

@@ -3,9 +3,9 @@
 from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
-from dataclasses import dataclass
 from typing import Literal
 
+from setupcheck.record import record
 from setupcheck.rulebook.needs import Facts, S, Unknown
 from setupcheck.rulebook.records import Condition
 
@@ -29,7 +29,7 @@ FACTS: Mapping[str, str] = {
 """The closed list of facts that rules and cautions may ask for, with their values; looked up outward."""
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Applies:
     """The answer, and for `unknown` the job paths that would settle it."""
 

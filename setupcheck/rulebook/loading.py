@@ -8,11 +8,11 @@ from __future__ import annotations
 import hashlib
 import re
 from collections.abc import Collection, Mapping
-from dataclasses import dataclass
 from pathlib import Path
 from types import MappingProxyType
 from typing import TypeVar
 
+from setupcheck.record import record
 from setupcheck.rulebook.entries import Entry, list_of, open_file
 from setupcheck.rulebook.facts import FACTS
 from setupcheck.rulebook.messages import wrong_fields
@@ -53,7 +53,7 @@ _RULE_ID = re.compile(r"([A-Z]+)-([0-9]{3})")
 _CAUTION_ID = re.compile(r"[a-z]+(-[a-z]+)*")
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class _Names:
     """Every name that a rule may use."""
 
