@@ -8,7 +8,7 @@ from setupcheck.quantities.judged import Result
 from setupcheck.quantities.route import machine_of
 from setupcheck.quantities.scopes import HoldEntry
 from setupcheck.quantities.shop import Floor
-from setupcheck.quantities.typical import typical
+from setupcheck.quantities.typical import typical, typical_length
 
 
 def datum_state(floor: Floor, key: str) -> str | None:
@@ -39,7 +39,7 @@ def error_stated(entry: HoldEntry, key: str) -> str | Open:
     if given.at_most is not None:
         return "stated"
     device = given.device or str(getattr(entry.entry, "by", ""))
-    if typical(device, entry.key) is None:
+    if (typical_length(device) if entry.key == "error" else typical(device, entry.key)) is None:
         return Open((f"{path}.at_most",), f"no typical value is known for {device}")
     return "typical"
 

@@ -99,6 +99,7 @@ def _finding(found: Review, finding: Finding) -> Iterator[str]:
     yield from wrap(head + (f", line {finding.line}" if finding.line else ""), first="  ", rest="        ")
     yield from wrap(clean(finding.message) + "." + _margin(finding), first="      ", rest="      ")
     if finding.verdict == "pass":
+        yield from _rests_on(finding)
         return
     result = found.results.get(finding.key)
     if result is not None and finding.rule.startswith("STACK") and result.combined.shares:
@@ -112,8 +113,7 @@ def _finding(found: Review, finding: Finding) -> Iterator[str]:
             first="      ",
             rest="          ",
         )
-    if finding.rests_on:
-        yield from wrap("Rests on typical values: " + ", ".join(finding.rests_on) + ".", first="      ", rest="      ")
+    yield from _rests_on(finding)
     if finding.house:
         yield from wrap(f"By {clean(finding.house)}", first="      ", rest="      ")
     if finding.waiver:
@@ -122,6 +122,11 @@ def _finding(found: Review, finding: Finding) -> Iterator[str]:
         return
     told = [f"{s.ref}, {s.place} ({s.kind})" if s.place else f"{s.ref} ({s.kind})" for s in finding.sources]
     yield from wrap("Source: " + "; ".join(told), first="      ", rest="          ")
+
+
+def _rests_on(finding: Finding) -> Iterator[str]:
+    if finding.rests_on:
+        yield from wrap("Rests on typical values: " + ", ".join(finding.rests_on) + ".", first="      ", rest="      ")
 
 
 def _margin(finding: Finding) -> str:

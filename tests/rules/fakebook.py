@@ -126,6 +126,8 @@ QUANTITIES: Mapping[str, FakeQuantity] = {
         FakeQuantity("heat.planned_high", "join", "degC", 0),
         FakeQuantity("heat.needed", "join", "degC", 0),
         FakeQuantity("heat.cap", "join", "degC", 0),
+        FakeQuantity("heat.error_kind", "join", "", 0),
+        FakeQuantity("tilt.uncertainty_kind", "setup", "", 0),
         FakeQuantity("tilt.allowed", "setup", "arcmin", 1),
         FakeQuantity("tilt.belongs_to", "setup", "", 0),
         FakeQuantity("tilt.lean", "setup", "", 0),
