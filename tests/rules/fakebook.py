@@ -108,6 +108,8 @@ QUANTITIES: Mapping[str, FakeQuantity] = {
         FakeQuantity("hold.measured_u", "hold", "um", 2),
         FakeQuantity("hold.clearance_share", "hold", "%", 0),
         FakeQuantity("hold.reach", "cut", "1", 2),
+        FakeQuantity("hold.overhang", "hold", "1", 1),
+        FakeQuantity("cutter.overhang", "cut", "1", 1),
         FakeQuantity("machine.error_stated", "setup", "", 0),
         FakeQuantity("machine.error_kind", "setup", "", 0),
         FakeQuantity("allow.least_stock", "cut", "mm", 3),
