@@ -9,7 +9,7 @@ from setupcheck.physics.materials import Material
 from setupcheck.quantities.material_data import material
 
 FAMILIES = (
-    ("copper-alloy", r"cu|cc\d|c[1-9]\d{4}|bronze|brass|gunmetal|rg\d|sae 6\d"),
+    ("copper-alloy", r"cu|c[cw]\d|c[1-9]\d{4}|bronze|brass|gunmetal|rg\d|sae 6\d"),
     ("cast-iron", r"gg|gj|jl|jm|js|cast.?iron|gr[ea]y.?iron"),
     ("aluminium", r"al|aw|[2-7]\d{3}(-t\d|$)"),
     ("steel", r"\d|steel|c\d\d?\b|s\d{3}|x\d"),
@@ -22,10 +22,10 @@ _SYMBOLS: dict[Content, str] = {"lead": "Pb", "zinc": "Zn", "beryllium": "Be"}
 _BY_NUMBER: dict[Content, str] = {
     "lead": r"(al)?(2007|2011|2030|6012|6262)|1[12]l\d\d",
     "zinc": r"7\d{3}|brass|.*\+za?\b",
-    "beryllium": r"c(17|81|82)\d{3}",
+    "beryllium": r"c(17|81|82)\d{3}|cw1(0[0-4]|10)c",
 }
 """Names that carry no symbol: free-cutting aluminium and steel with lead; aluminium of the 7000 series, brass and
-galvanized steel with zinc; UNS numbers of coppers with beryllium. Source: common designations, from memory."""
+galvanized steel with zinc; UNS and EN numbers of coppers with beryllium. Source: common designations, from memory."""
 _LOW_TEMPER = 150.0
 """degC: a steel that stands no more than this in one heating is hardened and tempered low. Source: rules/data/materials.yaml."""
 
@@ -49,7 +49,7 @@ def holds(name: str, content: Content) -> bool | None:
 
     >>> [holds(name, "lead") for name in ("CuSn12-C", "C95400", "CuSn14", "bearing bronze", "42CrMo4", "11SMnPb30")]
     [True, False, None, None, False, True]
-    >>> [holds(name, "beryllium") for name in ("CuBe2", "cuco2be", "C17510", "C90300", "bearing bronze", "bronze 2")]
+    >>> [holds(name, "beryllium") for name in ("CuBe2", "cuco2be", "CW101C", "C90300", "CW614N", "bronze 2")]
     [True, True, True, False, None, None]
     """
     found = material(name)
