@@ -23,12 +23,17 @@ from setupcheck.jobfile.types import (
     Angle,
     AngleBound,
     Bound,
+    Expansion,
     Length,
     Limit,
     Limits,
+    Pressure,
     Reading,
+    Roughness,
+    Service,
     Size,
     Speed,
+    Temperature,
     in_file_units,
     units_of,
 )
@@ -177,7 +182,7 @@ class Round(Shop):
     low: Length = Field(alias="from")
     high: Length = Field(alias="to")
     hole: Size | None = None
-    roughness: str | None = None
+    roughness: Roughness | None = None
     made: Literal["stock"] | None = None
     pitch: Size | None = None
 
@@ -200,7 +205,7 @@ class Flat(Shop):
     facing: Facing
     diameter: Size | None = None
     hole: Size | None = None
-    roughness: str | None = None
+    roughness: Roughness | None = None
     made: Literal["stock"] | None = None
 
 
@@ -269,10 +274,32 @@ class Relation(Shop):
         return self
 
 
+class Properties(Shop):
+    """What the certificate says of a part's material, in place of the list, or for a material that is not in it.
+
+    modulus, poisson       elastic constants [MPa, -];  expansion  mean from 20 degC [1/K]
+    yield_strength         R_e or R_p0.2 [MPa];  tensile_strength  R_m [MPa], which judges a `brittle` material
+    density, specific_heat [kg/m3, J/kgK]
+    heat_cap, last_temper  highest temperature of one heating; temperature of the last temper [degC]
+    """
+
+    modulus: Pressure | None = None
+    poisson: float | None = Field(default=None, ge=0.0, lt=0.5)
+    expansion: Expansion | None = None
+    yield_strength: Pressure | None = None
+    tensile_strength: Pressure | None = None
+    brittle: bool = False
+    density: float | None = Field(default=None, gt=500.0, lt=25_000.0)
+    specific_heat: float | None = Field(default=None, gt=50.0, lt=5000.0)
+    heat_cap: Temperature | None = None
+    last_temper: Temperature | None = None
+
+
 class Part(Shop):
     """One part: its material, its surfaces by name, and the relations that no setup here makes (`given`)."""
 
     material: str | None = None
+    properties: Properties | None = None
     surfaces: dict[str, Surface] = Field(min_length=1)
     given: tuple[Relation, ...] = ()
 
@@ -289,24 +316,33 @@ class Worm(Shop):
     pressure_angle: Angle | None = None
     profile: Literal["ZA", "ZN", "ZI", "ZK", "ZC"] | None = None
     thread_thickness: Dim | None = None
+    material: str | None = None
     end_float: Bound | None = None
     runout: RunOut | None = None
     speed: Speed | None = None
 
 
 class Mesh(Shop):
+    """Worm and wheel where they work. `shift` is the wheel's profile shift factor, `serves_at` the drive's temperatures."""
+
     wheel: str
     centre_distance: Dim | None = None
+    shift: float = Field(default=0.0, ge=-1.0, le=1.0)
     shaft_angle_error: AngleBound | None = None
     housing: str | None = None
+    serves_at: Service | None = None
 
 
 class Cutter(Shop):
+    """A cutter. `width` of an insert, at the height `width_at` above its tip; at pitch height where none is said."""
+
     kind: Literal["single-point", "hob", "form-cutter", "drill", "reamer", "boring-head", "grinding-wheel", "broach"]
     tip_radius: Size | None = None
     bar_diameter: Size | None = None
     overhang: Size | None = None
-    insert: str | None = None
+    insert: Literal["envelope", "mid-plane"] | None = None
+    width: Dim | None = None
+    width_at: Size | None = None
     diameter: Size | None = None
     speed: Speed | None = None
 

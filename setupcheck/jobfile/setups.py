@@ -241,10 +241,17 @@ class Scatter(Shop):
 
 
 class Touched(Shop):
-    """The surface the depth is counted from, with its measured diameter."""
+    """The surface the depth is counted from, its diameter as measured or how far it may be off, and how it is touched.
+
+    at_most  how far its diameter may be from the drawing, either way; `uncertainty` of `measured` is expanded, k = 2
+    tool     `standing` (tip in the mid-plane) or `turning` (a turning cutter meets the corners of a throat first)
+    """
 
     surface: str
     measured: Size | None = None
+    uncertainty: Bound | None = None
+    at_most: Bound | None = None
+    tool: Literal["standing", "turning"] | None = None
 
 
 class Cut(Shop):
@@ -270,6 +277,7 @@ class Cut(Shop):
     form: Bound | None = None
     cutter: str | None = None
     depth: Size | None = None
+    depth_error: Error | None = None
     depth_from: (
         Annotated[
             Touched,
@@ -296,6 +304,8 @@ class Heat(Shop):
 class Join(Shop):
     """Two parts put together: the machine axis of this step is the inner part's surface.
 
+    grips_first  where a shrunk hub bites first: `shoulder-end` (cooled or clamped so that no gap opens) or `anywhere`
+    friction     of the joint, where the shop knows better than the table;  smoothing  share of both Rz that is lost
     square  `bore` (a long fit rules the lean) or `shoulder` (the faces named in `stop` do)
     mounted_at  where the outer part's mark stands on the inner part's, if it is kept
     """
@@ -310,9 +320,20 @@ class Join(Shop):
     stop: Stop | None = None
     mounted_at: Angle | None = None
     heat: Heat | None = None
+    grips_first: Literal["shoulder-end", "anywhere"] | None = None
     joint: Literal["degreased", "oiled"] | None = None
+    friction: Annotated[float, Field(gt=0.0, le=1.0)] | None = None
+    smoothing: Annotated[float, Field(ge=0.0, le=1.0)] | None = None
     must_carry: dict[Literal["torque", "axial_force"], Limit] | None = None
     serves_at: Service | None = None
+
+    @model_validator(mode="after")
+    def it_carries_a_torque_and_a_force(self) -> Join:
+        for key, kind, example in (("torque", "torque", "40 N m"), ("axial_force", "force", "800 N")):
+            given = (self.must_carry or {}).get(key)  # type: ignore[call-overload]
+            if given is not None and (given.dimension != kind or given.value < 0.0):
+                raise ValueError(f"must_carry.{key} is no {kind}. Write {key}: {example}")
+        return self
 
 
 class Setup(Shop):

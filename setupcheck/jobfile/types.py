@@ -118,6 +118,12 @@ AngleBound = Annotated[float, _plain(notation.angle_bound), TEXT]
 """A non-negative angle bound [rad]."""
 Temperature = Annotated[float, _plain(notation.temperature), TEXT]
 TemperatureDifference = Annotated[float, _plain(notation.temperature_difference), TEXT]
+Pressure = Annotated[float, _plain(notation.pressure), TEXT]
+"""A stress or modulus [MPa]; the unit must be written."""
+Expansion = Annotated[float, _plain(notation.expansion), TEXT]
+"""A thermal expansion [1/K]; the unit must be written."""
+Roughness = Annotated[notation.Roughness, BeforeValidator(lambda given: notation.roughness(_scalar(given))), TEXT]
+"""A roughness with its figure, Ra or Rz."""
 Duration = Annotated[float, _plain(notation.duration), TEXT]
 Speed = Annotated[float, _plain(notation.speed), TEXT]
 """[rev/min]"""

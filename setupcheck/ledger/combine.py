@@ -228,14 +228,14 @@ def combine(figure: Figure, draws: Draws, *, low: float | None, high: float | No
     above = math.sqrt(sum((p.up - p.known) ** 2 for p in pushes))
     below = math.sqrt(sum((p.down + p.known) ** 2 for p in pushes))
     rss = Ends(known - below, known + above) if figure.signed else Ends(0.0, math.hypot(known, above))
-    values = figure.sample(draws)
+    values = np.atleast_2d(figure.sample(draws))  # one row, or the least and the largest of a turn
+    least, most = values[0], values[-1]
     beyond = 1.0 - confidence
     if figure.signed and (low is None) == (high is None):
-        ends = np.quantile(values, [beyond / 2.0, 1.0 - beyond / 2.0])
-    else:
-        ends = np.quantile(values, [beyond, confidence])
-    likely = Ends(max(float(ends[0]), worst.low) if figure.signed else 0.0, min(float(ends[1]), worst.high))
-    chance, error = _chance(values, worst, low, high)
+        beyond /= 2.0
+    ends = float(np.quantile(least, beyond)), float(np.quantile(most, 1.0 - beyond))
+    likely = Ends(max(ends[0], worst.low) if figure.signed else 0.0, min(ends[1], worst.high))
+    chance, error = _chance(least, most, worst, low, high)
     total = sum(_towards(p, towards_high) for p in pushes) or 1.0
     shares = sorted(
         (Share(p.cause, _towards(p, towards_high), _towards(p, towards_high) / total) for p in pushes),
@@ -255,16 +255,18 @@ def _nearer_end(worst: Ends, low: float | None, high: float | None) -> str:
     return "low" if worst.low - low < high - worst.high else "high"
 
 
-def _chance(values: Reals, worst: Ends, low: float | None, high: float | None) -> tuple[float | None, float | None]:
+def _chance(
+    least: Reals, most: Reals, worst: Ends, low: float | None, high: float | None
+) -> tuple[float | None, float | None]:
     """(probability of meeting the limits, its standard sampling error); 1 and 0 where even the worst case meets them."""
     if low is None and high is None:
         return None, None
     if (low is None or worst.low >= low) and (high is None or worst.high <= high):
         return 1.0, 0.0
-    met = np.ones(len(values), dtype=bool)
+    met = np.ones(len(least), dtype=bool)
     if low is not None:
-        met &= values >= low
+        met &= least >= low
     if high is not None:
-        met &= values <= high
-    p, n = float(met.mean()), len(values)
+        met &= most <= high
+    p, n = float(met.mean()), len(least)
     return p, math.sqrt(max(p * (1.0 - p), 1.0 / n) / n)

@@ -137,6 +137,36 @@ class Length:
 
 
 @dataclass(frozen=True, slots=True, eq=False)
+class OverATurn:
+    """A length that swings once a turn with an eccentricity: account -+ factor |offset|. Both ends count.
+
+    `sample` has two rows, the least and the largest of the turn.  Source: geometry, derived here.
+    """
+
+    account: Account
+    offset: Account
+    factor: float
+    signed: bool = True
+
+    def base(self) -> float:
+        return real_pushes(self.account)[0]
+
+    def pushes(self) -> list[Push]:
+        _, each = vector_pushes(self.offset, self.factor)
+        both = [
+            Push(p.cause, p.up - p.down, p.up - p.down) for p in each
+        ]  # what swings out swings in half a turn later
+        return merged(real_pushes(self.account)[1], both)
+
+    def undetermined(self) -> tuple[str, ...]:
+        return tuple(dict.fromkeys(self.account.undetermined() + self.offset.undetermined()))
+
+    def sample(self, draws: Draws) -> Reals:
+        middle, swing = draws.real(self.account), self.factor * np.abs(draws.account(self.offset))
+        return np.asarray([middle - swing, middle + swing])
+
+
+@dataclass(frozen=True, slots=True, eq=False)
 class Stock:
     """Radial stock left at the worst place round the part [mm]: depth - largest |offset| at the ends of the cut.
 

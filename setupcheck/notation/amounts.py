@@ -22,6 +22,7 @@ from setupcheck.notation.figures import (
 from setupcheck.notation.lengths import FILE_UNITS, Units, bound, length, without_plus_minus
 from setupcheck.notation.units import (
     DURATION,
+    EXPANSION,
     FORCE,
     FRACTION,
     KINDS,
@@ -51,7 +52,7 @@ NUMBER_ALONE = Kind("number", "a number", {}, "a number without unit", "72")
 
 Dimension = Literal[
     "length", "angle", "torque", "force", "fraction", "temperature", "temperature_difference", "pressure", "duration",
-    "mass", "speed", "number",
+    "mass", "speed", "expansion", "number",
 ]  # fmt: skip
 
 
@@ -145,6 +146,15 @@ def pressure(given: Given, *, at_least: float | None = 0.0) -> float:
     (210000.0, 0.6)
     """
     return _in_base(given, PRESSURE, at_least)
+
+
+def expansion(given: Given, *, at_least: float | None = 0.0) -> float:
+    """A thermal expansion: `11.5 um/m/K`. Returns 1/K.
+
+    >>> expansion("12 um/m/K")
+    1.2e-05
+    """
+    return _in_base(given, EXPANSION, at_least)
 
 
 def duration(given: Given, *, at_least: float | None = 0.0) -> float:

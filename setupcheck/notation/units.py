@@ -156,6 +156,13 @@ DURATION = Kind(
         '"': "Seconds of arc stand in the place of a time: write s",
     },
 )
+EXPANSION = Kind(
+    "expansion",
+    "an expansion",
+    {"um/m/K": (1, 1_000_000), "um/m/degC": (1, 1_000_000), "um/(m*K)": (1, 1_000_000), "ppm/K": (1, 1_000_000)},
+    "um/m/K",
+    "11.5 um/m/K",
+)
 FRACTION = Kind("fraction", "a share", {"%": (1, 100), "percent": (1, 100)}, "%", "95 %")
 MASS = Kind(
     "mass",
@@ -182,7 +189,7 @@ SPEED = Kind(
 )  # fmt: skip
 
 # In the order in which a unit of unknown kind is looked up: the " is seconds of arc before it is inches.
-KINDS = (ANGLE, LENGTH, TEMPERATURE, TORQUE, FORCE, PRESSURE, DURATION, FRACTION, MASS, SPEED)
+KINDS = (ANGLE, LENGTH, TEMPERATURE, TORQUE, FORCE, PRESSURE, DURATION, FRACTION, MASS, SPEED, EXPANSION)
 
 _JOIN = re.compile(r"\s*\*\s*|\s+")
 

@@ -12,7 +12,7 @@ FAMILIES = (
     ("copper-alloy", r"cu|c[cw]\d|c[1-9]\d{4}|bronze|brass|gunmetal|rg\d|sae 6\d"),
     ("cast-iron", r"gg|gj|jl|jm|js|cast.?iron|gr[ea]y.?iron"),
     ("aluminium", r"al|aw|[2-7]\d{3}(-t\d|$)"),
-    ("steel", r"\d|steel|c\d\d?\b|s\d{3}|x\d"),
+    ("steel", r"\d|steel|c\d\d?[er]?\b|s\d{3}|x\d"),
 )
 """How names of materials begin, and what they are: EN, UNS and trade names. Source: common designations, from memory."""
 
@@ -65,17 +65,11 @@ def holds(name: str, content: Content) -> bool | None:
     return False if content == "beryllium" and re.match(r"c\d{5}", plain) else None
 
 
-def breaks(name: str) -> bool | None:
-    """Whether a part of this material splinters instead of bending: grey iron, hardened steel. None: it cannot be told.
+def breaks(found: Material) -> bool:
+    """Whether a part of this material splinters instead of bending: grey iron, hardened steel.
 
-    Source: the list of materials (`brittle`, and steels that stand no more than a low temper).
-
-    >>> [breaks(name) for name in ("EN-GJL-250", "EN-GJS-400-15", "16MnCr5", "42CrMo4", "CuSn12-C", "34CrNiMo6")]
-    [True, False, True, False, False, None]
+    Source: the list of materials or the job file (`brittle`, and steels that stand no more than a low temper).
     """
-    found = material(name)
-    if not isinstance(found, Material):
-        return None
     return found.brittle or (found.family == "steel" and found.heat_cap.value <= _LOW_TEMPER)
 
 

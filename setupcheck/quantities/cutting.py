@@ -4,7 +4,6 @@ from __future__ import annotations
 
 from setupcheck.quantities.book import Open, OutOfRange, Quantity
 from setupcheck.quantities.scopes import CutEntry
-from setupcheck.quantities.shop import Floor
 
 
 def passes_left(entry: CutEntry, path: str) -> float | Open | None:
@@ -29,24 +28,6 @@ def last_pass(entry: CutEntry) -> float | None:
     return entry.cut.passes[-1] if len(entry.cut.passes) > 1 else None
 
 
-def overhang(floor: Floor, entry: CutEntry) -> float | Open | None:
-    """How far a bar stands out, in its own diameters: overhang / bar diameter.
-
-    None for a cutter without a bar; a boring head always has one, a single point where either is stated.
-    Source: arithmetic on the job file.
-    """
-    name = entry.cut.cutter
-    cutter = floor.loaded.job.cutters[name] if name is not None else None
-    if cutter is None or cutter.kind not in ("boring-head", "single-point"):
-        return None
-    if cutter.kind == "single-point" and cutter.overhang is None and cutter.bar_diameter is None:
-        return None
-    if cutter.overhang is None or cutter.bar_diameter is None:
-        keys = ("overhang", "bar_diameter")
-        return Open(tuple(f"cutters.{name}.{key}" for key in keys if getattr(cutter, key) is None))
-    return cutter.overhang / cutter.bar_diameter
-
-
 CUTTING = (
     Quantity(
         "cutter.passes_left",
@@ -58,13 +39,4 @@ CUTTING = (
         "depth that the listed passes leave",
     ),
     Quantity("cutter.last_pass", "cut", "mm", 3, last_pass, {"entry": ":"}, "thickness of the last pass"),
-    Quantity(
-        "cutter.overhang",
-        "cut",
-        "1",
-        1,
-        overhang,
-        {"floor": "route.floor", "entry": ":"},
-        "how far the bar stands out, in its own diameters",
-    ),
 )

@@ -7,15 +7,14 @@ from dataclasses import dataclass
 from setupcheck.jobfile.models import Flat, Round
 from setupcheck.jobfile.names import Ref
 from setupcheck.jobfile.setups import Heat, Join, Setup
-from setupcheck.physics.materials import Material
-from setupcheck.quantities.book import Scope
+from setupcheck.quantities.book import Open, Scope
 from setupcheck.quantities.contents import breaks, holds, material_family
 from setupcheck.quantities.joining import heat_error
-from setupcheck.quantities.material_data import material
 from setupcheck.quantities.requirements import Stack, spoken
 from setupcheck.quantities.route import machine_of
 from setupcheck.quantities.scopes import CutEntry, HoldEntry
 from setupcheck.quantities.shop import Floor, outline
+from setupcheck.quantities.stuff import cap_of, material_of
 
 HOT = 58.0
 """degC from which bare metal burns within seconds. Source: 58 to 60 degC at five seconds' touch (ISO 13732-1 and ASTM C1055
@@ -129,11 +128,10 @@ def _above_cap(floor: Floor, join: Join, heat: Heat, path: str) -> Fact:
     error = heat_error(heat)
     if error is None:
         return UnknownFact(f"{path}.oven_error")
-    name = floor.loaded.job.parts[part].material
-    found = material(name) if name is not None else None
-    if not isinstance(found, Material):
-        return UnknownFact(f"parts.{part}.material")
-    return heat.hub + error[0] > found.heat_cap.value
+    found = material_of(floor, part)
+    if isinstance(found, Open):
+        return UnknownFact(found.missing[0])
+    return heat.hub + error[0] > cap_of(floor, part, found)
 
 
 def _may_trap(floor: Floor, join: Join) -> bool:
@@ -151,9 +149,8 @@ def _may_trap(floor: Floor, join: Join) -> bool:
 
 
 def _breaks(floor: Floor, part: str) -> bool | UnknownFact:
-    name = floor.loaded.job.parts[part].material
-    found = breaks(name) if name is not None else None
-    return found if found is not None else UnknownFact(f"parts.{part}.material")
+    found = material_of(floor, part)
+    return UnknownFact(found.missing[0]) if isinstance(found, Open) else breaks(found)
 
 
 def _called(scope: Scope, field: str) -> str | None:

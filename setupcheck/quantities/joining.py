@@ -7,6 +7,8 @@ from dataclasses import dataclass
 from setupcheck.jobfile.models import Dimension, Round
 from setupcheck.jobfile.names import Ref
 from setupcheck.jobfile.setups import Heat, Join
+from setupcheck.ledger.account import Account
+from setupcheck.ledger.causes import Cause
 from setupcheck.quantities.book import Known, Open, OutOfRange, Quantity
 from setupcheck.quantities.shop import Floor
 from setupcheck.quantities.typical import typical
@@ -81,6 +83,30 @@ def interference_least(sizes: JointSizes) -> float:
     return sizes.journal_low - sizes.bore_high
 
 
+def gap_after_cooling(floor: Floor, join: Join, *, op: int, length: float) -> Account:
+    """What a shrunk hub may stand off its shoulder once it is cold, one way only, 0 to U L/D [mm].
+
+    Nothing where the shoulder end grips first; undetermined where the sizes of the joint are not stated.
+    length  of the joint [mm]
+    Source: physics.heating.shoulder_gap.
+    """
+    from setupcheck.physics.heating import shoulder_gap
+
+    if join.by != "shrink" or join.grips_first == "shoulder-end":
+        return Account()
+    found = sizes(floor, join)
+    if found is None:
+        return Account()
+    name = f"op {op}: gap at the shoulder after cooling"
+    if isinstance(found, Open):
+        missing = found.missing[0] if found.missing else f"setups.{op}.join.grips_first"
+        return Account.of(Cause(name, "undetermined", op, missing=missing)).along(1)
+    gap = shoulder_gap(interference_most(found), diameter=found.nominal, grip_distance=length)
+    if gap <= 0.0:
+        return Account()
+    return Account.of(Cause(name, "one-sided", op, high=gap, mode="derived", paths=(f"setups.{op}.join.grips_first",)))
+
+
 def kind(most: float, least: float) -> str:
     """interference, clearance, or transition between both, over the limits of the sizes. Source: ISO 286 (from memory)."""
     if least > 0.0:
@@ -90,16 +116,12 @@ def kind(most: float, least: float) -> str:
 
 def _expansion(floor: Floor, part: str, of: str, temperature: float) -> float | Open:
     """Mean expansion that is safe for joining [1/K]: the low end of the hub, the high end of a shaft."""
-    from setupcheck.physics.materials import Material, expansion_for
-    from setupcheck.quantities.material_data import material
+    from setupcheck.physics.materials import expansion_for
+    from setupcheck.quantities.stuff import material_of
 
-    name = floor.loaded.job.parts[part].material
-    path = f"parts.{part}.material"
-    if name is None:
-        return Open((path,))
-    found = material(name)
-    if not isinstance(found, Material):
-        return Open((path,), found.because)
+    found = material_of(floor, part)
+    if isinstance(found, Open):
+        return found
     return expansion_for("joining", "hub" if of == "hub" else "shaft", found, temperature=temperature).value
 
 
@@ -181,17 +203,13 @@ def kind_of_error(join: Join, planned: float) -> str:
 
 def cap(floor: Floor, join: Join) -> float | Open | None:
     """Highest temperature the hub's material stands in one heating [degC]. Source: rules/data/materials.yaml."""
-    from setupcheck.physics.materials import Material
-    from setupcheck.quantities.material_data import material
+    from setupcheck.quantities.stuff import cap_of, material_of
 
     if join.by != "shrink":
         return None
     part = floor.loaded.ref(join.outer).part
-    name = floor.loaded.job.parts[part].material
-    if name is None:
-        return Open((f"parts.{part}.material",))
-    found = material(name)
-    return found.heat_cap.value if isinstance(found, Material) else Open((f"parts.{part}.material",), found.because)
+    found = material_of(floor, part)
+    return found if isinstance(found, Open) else cap_of(floor, part, found)
 
 
 _MOST, _SIZES = {"most": "fit.interference_most"}, {"sizes": "fit.sizes"}

@@ -7,10 +7,11 @@ from dataclasses import dataclass
 from setupcheck.ledger.combine import Combined, Draws, combine
 from setupcheck.ledger.figures import Figure
 from setupcheck.quantities.book import Known, Open
+from setupcheck.quantities.relations import Built
 from setupcheck.quantities.requirements import Stack
 from setupcheck.quantities.scopes import CutEntry
 from setupcheck.quantities.shop import Floor
-from setupcheck.quantities.stacks import Built, build, stock_left
+from setupcheck.quantities.stacks import build, stock_left
 
 THINNEST_CUT = 0.02
 """Radial stock a turning tool still cuts rather than rubs [mm]. Source: our screening choice; say `finishing_cut` at the cut."""

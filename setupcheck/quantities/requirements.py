@@ -8,6 +8,9 @@ from setupcheck.jobfile.models import Require
 from setupcheck.jobfile.sense import limit_kind
 from setupcheck.quantities.shop import Floor
 
+OF_THE_WHEEL = ("mid-plane", "backlash", "contact-length", "contact-area")
+"""Figures that speak of the mesh's wheel where nothing else is said."""
+
 
 @dataclass(frozen=True, slots=True)
 class Stack:
@@ -49,13 +52,18 @@ def read_stack(floor: Floor, index: int) -> Stack:
     if require.what == "allowance":
         unit, digits = "mm", 3
     about = require.about or (floor.loaded.job.place.axis if floor.loaded.job.place is not None else None) or ""
-    of = (
-        require.of
-        or (floor.loaded.job.mesh.wheel if floor.loaded.job.mesh is not None and require.what == "mid-plane" else "")
-        or ""
-    )
+    mesh = floor.loaded.job.mesh
+    of = require.of or (mesh.wheel if mesh is not None and require.what in OF_THE_WHEEL else "")
+    if require.what == "torque":
+        of, about = of or _only_joint(floor), ""
     name = require.name or ".".join(x for x in (require.what, of.replace(".", "-"), _short(about)) if x)
     return Stack(name, index, require, unit, digits, low, high, of, about)
+
+
+def _only_joint(floor: Floor) -> str:
+    """Operation of the only joint of a job; empty where there are several or none."""
+    joins = [str(s.op) for s in floor.loaded.job.setups if s.join is not None]
+    return joins[0] if len(joins) == 1 else ""
 
 
 def _short(text: str) -> str:
@@ -64,10 +72,12 @@ def _short(text: str) -> str:
 
 def spoken(stack: Stack) -> str:
     """The surfaces of a requirement in words: `teeth about bearings`, with their parts where both have one name."""
+    if stack.require.what == "torque":
+        return f"op {stack.of}" if stack.of else "the joint"
     of, about = _surface(stack.of), _surface(stack.about)
     if of == about:
         of, about = _surface(stack.of, whole=True), _surface(stack.about, whole=True)
-    alone = not about or stack.require.what in ("allowance", "chord", "pitch-circle", "torque")
+    alone = not about or stack.require.what in ("allowance", "chord", "pitch-circle", "contact-length", "contact-area")
     return of if alone else f"{of} about {about}"
 
 

@@ -13,6 +13,7 @@ from setupcheck.ledger.account import Account
 from setupcheck.ledger.causes import Cause
 from setupcheck.ledger.route import Placing, Seat, State
 from setupcheck.quantities.bought import surfaces_as_bought
+from setupcheck.quantities.carried_over import mid_plane_before_tilt
 from setupcheck.quantities.causes import (
     Entry,
     Towards,
@@ -25,6 +26,7 @@ from setupcheck.quantities.causes import (
 )
 from setupcheck.quantities.dividing import divided, table_turn
 from setupcheck.quantities.holding import Held, held_placing
+from setupcheck.quantities.joining import gap_after_cooling
 from setupcheck.quantities.shop import Body, Floor, outline, tooth_pattern, unknown_surface
 
 
@@ -178,8 +180,7 @@ def _dial(setup: Setup, cut: Cut, name: str, teeth: bool) -> Account:
         given, path = setup.head.mid_plane.error, f"setups.{op}.head.mid_plane.error"
         words = f"op {op}, {name}: mid-plane found {setup.head.mid_plane.found.replace('-', ' ')}"
         if setup.head.mid_plane.found == "before-tilt":
-            # tilting about a pivot carries the mid-plane away; what is left of it is not computed yet
-            return Account.of(Cause(words, "undetermined", op, missing=f"setups.{op}.head.mid_plane.found"))
+            return mid_plane_before_tilt(setup.head, op, name)
     return length_error(given, Entry(words, op, path, "dial"))
 
 
@@ -290,7 +291,8 @@ def _join(floor: Floor, setup: Setup, join: Join) -> None:
                         missing=f"parts.{inner.part}.surfaces.{shoulder.name}.diameter",
                     )
                 ).along(1)
-        axial = face.axial + (spacer + lift) * float(face.facing) - met.axial
+        gap = gap_after_cooling(floor, join, op=op, length=high - low)
+        axial = face.axial + (spacer + lift + gap) * float(face.facing) - met.axial
     for states in other.states.values():
         for state in states:
             body.add(moved(state, offset, lean, axial))

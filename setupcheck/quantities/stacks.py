@@ -4,31 +4,18 @@ from __future__ import annotations
 
 import math
 from collections.abc import Callable
-from dataclasses import dataclass
 
-from setupcheck.jobfile.names import Ref
 from setupcheck.ledger import figures, route, teeth
 from setupcheck.ledger.account import Account
 from setupcheck.ledger.figures import Figure
 from setupcheck.ledger.route import State
+from setupcheck.quantities.backlash import backlash
 from setupcheck.quantities.book import Open
 from setupcheck.quantities.causes import Entry, size_error
+from setupcheck.quantities.relations import Built, pair, second_order, state
 from setupcheck.quantities.requirements import Stack
+from setupcheck.quantities.shares import contact, torque
 from setupcheck.quantities.shop import Floor
-
-NOT_YET = ("backlash", "contact-length", "contact-area", "torque")
-"""Figures a job file may ask for that this version does not compute; their findings are open."""
-
-
-@dataclass(frozen=True, slots=True)
-class Built:
-    """A stack's figure, with the levers its first-order treatment rests on.
-
-    second_order  L t^2 / 2 with the worst lean and the longest lever [mm]
-    """
-
-    figure: Figure
-    second_order: float
 
 
 def build(floor: Floor, stack: Stack) -> Built | Open:
@@ -36,8 +23,6 @@ def build(floor: Floor, stack: Stack) -> Built | Open:
 
     Raises: JobError where the surfaces cannot have such a figure.
     """
-    if stack.require.what in NOT_YET:
-        return Open(because=f"{stack.require.what} is not computed by this version")
     made = _FIGURES[stack.require.what](floor, stack)
     if isinstance(made, Open):
         return made
@@ -45,52 +30,12 @@ def build(floor: Floor, stack: Stack) -> Built | Open:
     return Open(missing) if missing else made
 
 
-def _state(floor: Floor, stack: Stack, text: str, key: str) -> State | Open:
-    path = f"require[{stack.index + 1}].{key}"
-    if not text:
-        return Open((path,))
-    ref = floor.loaded.ref(text)
-    state = floor.now(ref)
-    if state is None:
-        made = floor.now(Ref(ref.part, ref.surface))
-        if made is not None:
-            raise floor.problem(
-                path,
-                f"operation {ref.op} does not cut {ref.part}.{ref.surface}",
-                "Write the op that cuts it after the @",
-            )
-        return Open((path,), f"{ref.part}.{ref.surface} is never made in this route")
-    return state
-
-
-def _pair(floor: Floor, stack: Stack) -> tuple[State, State] | Open:
-    """The surface asked about and the one it refers to, both in one piece."""
-    of, about = _state(floor, stack, stack.of, "of"), _state(floor, stack, stack.about, "about")
-    for state in (of, about):
-        if isinstance(state, Open):
-            return state
-    assert isinstance(of, State) and isinstance(about, State)
-    if floor.body(of.part) is not floor.body(about.part):
-        raise floor.problem(
-            f"require[{stack.index + 1}]",
-            f"{of.ref} and {about.ref} are never joined in this route",
-            "Write the joining as a setup of its own",
-        )
-    return of, about
-
-
-def _second_order(*, lean: Account, lever: float) -> float:
-    """L t^2 / 2 for the worst lean [mm]: what the first-order treatment leaves out. Source: cosine series."""
-    worst = lean.largest()
-    return lever * worst**2 / 2.0 if math.isfinite(worst) else 0.0
-
-
 def _vector(floor: Floor, stack: Stack) -> Built | Open:
     """run-out and coaxial: FIM = 2 |offset| at the worse end of the surface."""
-    pair = _pair(floor, stack)
-    if isinstance(pair, Open):
-        return pair
-    g, r = pair
+    found = pair(floor, stack)
+    if isinstance(found, Open):
+        return found
+    g, r = found
     at = stack.require.at
     heights = (
         (floor.z(g.part, at),)
@@ -101,12 +46,10 @@ def _vector(floor: Floor, stack: Stack) -> Built | Open:
     if _scatters_outwards(g):
         assert g.pattern is not None
         return Built(
-            figures.ToothRunOut(accounts[0], g.pattern, 1.0), _second_order(lean=g.lean - r.lean, lever=abs(g.z - r.z))
+            figures.ToothRunOut(accounts[0], g.pattern, 1.0), second_order(lean=g.lean - r.lean, lever=abs(g.z - r.z))
         )
     lever = max(abs(z - r.z) for z in heights)
-    return Built(
-        figures.Vector(accounts, 2.0), _second_order(lean=g.lean - r.lean, lever=max(lever, g.diameter or 0.0))
-    )
+    return Built(figures.Vector(accounts, 2.0), second_order(lean=g.lean - r.lean, lever=max(lever, g.diameter or 0.0)))
 
 
 def _scatters_outwards(state: State) -> bool:
@@ -116,25 +59,25 @@ def _scatters_outwards(state: State) -> bool:
 
 def _lean(floor: Floor, stack: Stack) -> Built | Open:
     """face-run-out: lean x across; squareness: lean itself, or over a stated diameter."""
-    pair = _pair(floor, stack)
-    if isinstance(pair, Open):
-        return pair
-    g, r = pair
+    found = pair(floor, stack)
+    if isinstance(found, Open):
+        return found
+    g, r = found
     across = stack.require.across
     if across is None and stack.require.what == "face-run-out":
         across = g.diameter
         if across is None:
             return Open((f"require[{stack.index + 1}].across",))
     account = g.lean - r.lean
-    return Built(figures.Vector((account,), across or 1.0), _second_order(lean=account, lever=across or 0.0))
+    return Built(figures.Vector((account,), across or 1.0), second_order(lean=account, lever=across or 0.0))
 
 
 def _teeth(floor: Floor, stack: Stack) -> Built | Open:
     """Pitch figures of teeth and holes, and the index figures of a wheel."""
-    pair = _pair(floor, stack)
-    if isinstance(pair, Open):
-        return pair
-    g, r = pair
+    found = pair(floor, stack)
+    if isinstance(found, Open):
+        return found
+    g, r = found
     what, pattern = stack.require.what, g.pattern
     if pattern is None:
         raise floor.problem(
@@ -160,7 +103,7 @@ def _teeth(floor: Floor, stack: Stack) -> Built | Open:
         driven=what in ("index-range", "index-within", "on-workpiece"),
         oblique=oblique,
     )
-    return Built(figure, _second_order(lean=g.lean - r.lean, lever=abs(g.z - r.z)))
+    return Built(figure, second_order(lean=g.lean - r.lean, lever=abs(g.z - r.z)))
 
 
 def _oblique(floor: Floor, g: State, r: State) -> Account | Open:
@@ -181,10 +124,10 @@ def _oblique(floor: Floor, g: State, r: State) -> Account | Open:
 
 def _backlash_swing(floor: Floor, stack: Stack) -> Built | Open:
     """Change of backlash over one turn: 4 e tan(alpha)."""
-    pair = _pair(floor, stack)
-    if isinstance(pair, Open):
-        return pair
-    g, r = pair
+    found = pair(floor, stack)
+    if isinstance(found, Open):
+        return found
+    g, r = found
     if g.pattern is None or g.pattern.pressure_angle is None:
         return Open((f"parts.{g.part}.surfaces.{g.name}.pressure_angle",))
     offset = g.offset - r.axis_at(g.z)
@@ -192,7 +135,7 @@ def _backlash_swing(floor: Floor, stack: Stack) -> Built | Open:
     figure: Figure = figures.Vector((offset,), swing)
     if _scatters_outwards(g):
         figure = figures.ToothRunOut(offset, g.pattern, swing / 2.0)
-    return Built(figure, _second_order(lean=g.lean - r.lean, lever=abs(g.z - r.z)))
+    return Built(figure, second_order(lean=g.lean - r.lean, lever=abs(g.z - r.z)))
 
 
 def _holes(floor: Floor, stack: Stack) -> Built | Open:
@@ -200,7 +143,7 @@ def _holes(floor: Floor, stack: Stack) -> Built | Open:
     from setupcheck.ledger import holes
 
     what = stack.require.what
-    g = _state(floor, stack, stack.of, "of")
+    g = state(floor, stack, stack.of, "of")
     if isinstance(g, Open):
         return g
     pattern = g.pattern
@@ -212,13 +155,13 @@ def _holes(floor: Floor, stack: Stack) -> Built | Open:
         return Built(holes.HoleChord(pattern), 0.0)
     if what == "pitch-circle":
         return Built(holes.PitchCircle(pattern), 0.0)
-    pair = _pair(floor, stack)
-    if isinstance(pair, Open):
-        return pair
-    _, r = pair
+    found = pair(floor, stack)
+    if isinstance(found, Open):
+        return found
+    _, r = found
     turn = None
     if stack.require.clock is not None:
-        key = _state(floor, stack, stack.require.clock, "clock")
+        key = state(floor, stack, stack.require.clock, "clock")
         if isinstance(key, Open):
             return key
         if key.pattern is None:
@@ -230,7 +173,7 @@ def _holes(floor: Floor, stack: Stack) -> Built | Open:
         turn = g.clock - _angle_about(key, r)
     return Built(
         holes.HolePosition(g.offset - r.axis_at(g.z), pattern, turn),
-        _second_order(lean=g.lean - r.lean, lever=abs(g.z - r.z)),
+        second_order(lean=g.lean - r.lean, lever=abs(g.z - r.z)),
     )
 
 
@@ -245,13 +188,13 @@ def _mid_plane(floor: Floor, stack: Stack) -> Built | Open:
     place = floor.loaded.job.place
     if place is None or place.worm_axis is None:
         return Open(("place.worm_axis",))
-    pair = _pair(floor, stack)
-    if isinstance(pair, Open):
-        return pair
-    g, r = pair
+    found = pair(floor, stack)
+    if isinstance(found, Open):
+        return found
+    g, r = found
     if g.pattern is None:
         raise floor.problem(f"require[{stack.index + 1}].of", f"{g.ref} has no teeth", "Write the name of a toothing")
-    face = _state(floor, stack, place.worm_axis.from_, "of")
+    face = state(floor, stack, place.worm_axis.from_, "of")
     if isinstance(face, Open):
         return Open(("place.worm_axis.from",), face.because)
     if not face.facing:
@@ -271,21 +214,19 @@ def _mid_plane(floor: Floor, stack: Stack) -> Built | Open:
     axial = g.axial - face.axial - error * sign
     axial = axial.plus_constant(g.z - face.z - sign * middle)
     lean = g.lean - r.lean
-    return Built(figures.MidPlane(axial, lean, g.pattern), _second_order(lean=lean, lever=g.pattern.radius))
+    return Built(figures.MidPlane(axial, lean, g.pattern), second_order(lean=lean, lever=g.pattern.radius))
 
 
 def _length(floor: Floor, stack: Stack) -> Built | Open:
     """Axial distance of two faces, positive as drawn."""
-    pair = _pair(floor, stack)
-    if isinstance(pair, Open):
-        return pair
-    g, r = pair
+    found = pair(floor, stack)
+    if isinstance(found, Open):
+        return found
+    g, r = found
     way = 1.0 if g.z >= r.z else -1.0
     account = (g.axial - r.axial) * way
     lever = max((s.diameter or 0.0) for s in (g, r))
-    return Built(
-        figures.Length(account.plus_constant(abs(g.z - r.z))), _second_order(lean=g.lean - r.lean, lever=lever)
-    )
+    return Built(figures.Length(account.plus_constant(abs(g.z - r.z))), second_order(lean=g.lean - r.lean, lever=lever))
 
 
 def _allowance(floor: Floor, stack: Stack) -> Built | Open:
@@ -353,4 +294,8 @@ _FIGURES: dict[str, Callable[[Floor, Stack], Built | Open]] = {
     "mid-plane": _mid_plane,
     "length": _length,
     "allowance": _allowance,
+    "backlash": backlash,
+    "contact-area": contact,
+    "contact-length": contact,
+    "torque": torque,
 }

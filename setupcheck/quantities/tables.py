@@ -4,9 +4,14 @@ from __future__ import annotations
 
 from setupcheck.quantities import holds, judged
 from setupcheck.quantities.book import Quantity
+from setupcheck.quantities.cutter_shape import SHAPE
 from setupcheck.quantities.cutting import CUTTING
 from setupcheck.quantities.division import DIVIDE
+from setupcheck.quantities.head_setting import HEAD
 from setupcheck.quantities.joining import JOINING
+from setupcheck.quantities.joint_heat import HEAT
+from setupcheck.quantities.meshing import MESHING
+from setupcheck.quantities.strength import STRENGTH
 from setupcheck.quantities.tilting import TILT
 
 ROUTE = (
@@ -243,4 +248,19 @@ PLACE = (
     ),
 )
 
-TABLES: tuple[Quantity, ...] = (*ROUTE, *STACK, *HOLD, *ALLOW, *DIVIDE, *TILT, *JOINING, *CUTTING, *PLACE)
+TABLES: tuple[Quantity, ...] = (
+    *ROUTE,
+    *STACK,
+    *HOLD,
+    *ALLOW,
+    *DIVIDE,
+    *TILT,
+    *HEAD,
+    *JOINING,
+    *STRENGTH,
+    *HEAT,
+    *CUTTING,
+    *SHAPE,
+    *MESHING,
+    *PLACE,
+)

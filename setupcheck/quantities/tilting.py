@@ -7,7 +7,7 @@ from setupcheck.jobfile.setups import Setup
 from setupcheck.quantities.book import Known, Open, OutOfRange, Quantity
 from setupcheck.quantities.route import machine_of
 from setupcheck.quantities.shop import Floor
-from setupcheck.quantities.typical import typical
+from setupcheck.quantities.typical import head_uncertainty
 
 
 def cuts_the_wheel(loaded: LoadedJob, setup: Setup) -> bool:
@@ -59,18 +59,17 @@ def error(set_angle: float, needed_angle: float) -> float:
     return abs(set_angle - needed_angle)
 
 
-def allowed(floor: Floor, setup: Setup) -> float | Known | Open | None:
+def allowed(floor: Floor, setup: Setup) -> Known | Open | None:
     """How finely the head can be set [rad]: a planned angle may miss the lead angle by no more.
 
     Source: the job file; where it names only the way of setting (`by`), the typical value of that way.
     """
     if not cuts_the_wheel(floor.loaded, setup):
         return None
-    head = setup.head
-    if head is not None and head.uncertainty is not None:
-        return head.uncertainty
-    row = typical(head.by, "tilt") if head is not None and head.by is not None else None
-    return Known(row.value, frozenset({row.name})) if row else Open((f"setups.{setup.op}.head.uncertainty",))
+    found = head_uncertainty(setup.head) if setup.head is not None else None
+    if found is None:
+        return Open((f"setups.{setup.op}.head.uncertainty",))
+    return Known(found[0], frozenset({found[1]} - {""}))
 
 
 def kind_of_uncertainty(setup: Setup, allowed: float) -> str:

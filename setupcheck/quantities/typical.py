@@ -7,6 +7,7 @@ from dataclasses import dataclass
 from functools import cache
 
 from setupcheck.errors import SetupcheckError
+from setupcheck.jobfile.setups import Head
 from setupcheck.notation import NotationError, angle_bound, bound, nearest, temperature_difference
 from setupcheck.shipped import shipped
 from setupcheck.yamlfile import Data, Tree, parse, read_text
@@ -112,3 +113,11 @@ def typical(device: str, what: str) -> Typical | None:
 def typical_length(device: str) -> Typical | None:
     """The typical error of a length set or read with a device: a position, a touch or a reading."""
     return next((row for what in ("position", "touch", "reading") if (row := typical(device, what)) is not None), None)
+
+
+def head_uncertainty(head: Head) -> tuple[float, str] | None:
+    """How finely a head can be set [rad] and the typical value that rests on ("" where it is stated); None: not known."""
+    if head.uncertainty is not None:
+        return head.uncertainty, ""
+    row = typical(head.by, "tilt") if head.by is not None else None
+    return (row.value, row.name) if row is not None else None

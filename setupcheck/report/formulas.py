@@ -6,7 +6,7 @@ DIAL = "geometry of the dial indicator, derived here"
 FLANK = "rigid shift of an involute, derived here; checked against an exact involute in the tests"
 PITCH = "pitch deviations as ISO 1328-1:1995 defines them; " + FLANK
 HOLES = "geometry, derived here"
-NOT_YET = ("not computed by this version", "")
+MARKS = "second-order theory of the plunged cutter, derived here; 3 to 15 % low against simulation"
 
 FORMULAS: dict[str, tuple[str, str]] = {
     "run-out": (
@@ -73,10 +73,26 @@ FORMULAS: dict[str, tuple[str, str]] = {
         "the worse end; on a face: depth of the cut - radius x lean between old and new face",
         "a circle turned about another centre, derived here",
     ),
-    "backlash": NOT_YET,
-    "contact-length": NOT_YET,
-    "contact-area": NOT_YET,
-    "torque": NOT_YET,
+    "backlash": (
+        "gap of the wheel - thread of the worm + 2 x (centre distance - both pitch radii) x tan(pressure angle) - growth of "
+        "the hub x tan(pressure angle) + what the temperature of the drive does, less and plus 2 e tan(pressure angle) over "
+        "a turn; the gap from the width of the insert and the depth",
+        "a rack that rolls on the wheel's pitch circle, derived here",
+    ),
+    "contact-length": (
+        "(B m / A + 2 w) / face width, from one end of the marking to the other; A crowning and B twist of the flank, m axial "
+        "module, w half the marked width",
+        MARKS,
+    ),
+    "contact-area": (
+        "2 w / face width, w = root of (film / (A cos(pressure angle) cos(lead angle))), A crowning",
+        MARKS,
+    ),
+    "torque": (
+        "lowest friction x pressure x seat x half the diameter over 1.2, at the temperature that takes most of the grip; "
+        "pressure straight in the interference less what the peaks lose",
+        "Coulomb friction and Lamé's equations, DIN 7190 (from memory)",
+    ),
 }
 """what -> (formula in words, its source). e is the distance of the two axes; FIM the full movement of the dial."""
 

@@ -10,31 +10,33 @@ from pydantic import BaseModel
 
 from setupcheck.jobfile.models import Flat, Part, Pattern, Round, Throat
 from setupcheck.jobfile.reading import LoadedJob
-from setupcheck.jobfile.setups import Head, Join, Setup
+from setupcheck.jobfile.setups import Setup
+from setupcheck.quantities.strength import FITTED
 from setupcheck.quantities.tilting import cuts_the_wheel
 from setupcheck.report.written import written
 
 NOT_LOOKED_AT: Mapping[str, Mapping[str, str]] = {
+    "Part": {"properties": "properties of its material ({said})"},
     "Round": {"roughness": "roughness {said} of {of}", "pitch": "pitch {said} of {of}"},
     "Flat": {"roughness": "roughness {said} of {of}"},
     "Throat": {"radius": "radius {said} of {of}"},
     "Worm": {
         "profile": "profile {said}",
         "thread_thickness": "thread thickness {said}",
-        "end_float": "end float {said}",
         "runout": "run-out {said}",
         "speed": "speed {said}",
+        "material": "worm of {said}",
     },
     "Mesh": {
-        "centre_distance": "centre distance {said}",
         "shaft_angle_error": "error of the shaft angle {said}",
         "housing": "housing of {said}",
+        "serves_at": "serves from {said}",
     },
     "Cutter": {
         "tip_radius": "tip radius {said}",
-        "bar_diameter": "bar diameter {said}",
-        "overhang": "overhang {said}",
         "insert": "insert {said}",
+        "width": "width of the insert {said}",
+        "width_at": "height {said} of that width",
         "diameter": "diameter {said}",
         "speed": "speed {said}",
     },
@@ -47,28 +49,27 @@ NOT_LOOKED_AT: Mapping[str, Mapping[str, str]] = {
         "sine_bar": "sine bar {said}",
         "blocks": "blocks {said}",
     },
-    "MidPlane": {"pivot": "height of the pivot {said}"},
     "Divide": {"faces": "readings on {said} faces", "order": "teeth cut {said}"},
     "Cut": {
         "depth": "depth {said} of {of} (held against the passes only)",
         "depth_from": "depth of {of} counted from {said}",
-        "tool_change_after": "tool change after {said} of {of}",
+        "depth_error": "error of the depth of {of} {said}",
     },
     "Join": {
         "heat": "heat ({said})",
+        "grips_first": "grips first at the {said}",
         "joint": "joint {said}",
+        "friction": "friction {said}",
+        "smoothing": "smoothing {said}",
         "must_carry": "must carry {said}",
         "serves_at": "serves from {said}",
     },
-    "Require": {"along": "along {said}", "film": "film of oil {said}"},
+    "Require": {"along": "along {said}", "film": "film of {said}"},
 }
-"""Record -> key -> shop words ({said}: as written, {of}: whose), for every entry that no figure or rule reads.
+"""Record -> key -> shop words ({said}: as written, {of}: whose), for every entry that some jobs have no use for.
 
-`heat` is read by the cautions alone. A test holds this table and the entries that are read against the models.
+`_looked` says where an entry counts after all. A test holds this table and the entries that are read against the models.
 """
-
-_COUNTS = ("tool_change_after",)
-"""Keys whose bare number is no length."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -98,46 +99,119 @@ def in_lines(found: Sequence[Uncomputed]) -> list[str]:
     return lines
 
 
-def _all(loaded: LoadedJob) -> Iterator[Uncomputed]:
+@dataclass(frozen=True, slots=True)
+class _Looked:
+    """What of a job the figures and rules do look at, by path: an entry under one of these is not told.
+
+    A path stands for itself and everything below it.
+    """
+
+    paths: frozenset[str]
+
+    def at(self, path: str) -> bool:
+        return any(path == p or path.startswith(p + ".") for p in self.paths)
+
+
+def _looked(loaded: LoadedJob) -> _Looked:
+    """Entries that count in this job, though not in every job."""
+    return _Looked(frozenset((*_of_joints(loaded), *_of_the_wheel(loaded), *_of_heads(loaded), *_of_limits(loaded))))
+
+
+def _of_joints(loaded: LoadedJob) -> Iterator[str]:
+    """What an interference joint is computed from; of any other joint nothing but where it sits."""
+    for setup in loaded.job.setups:
+        join = setup.join
+        if join is None or join.by not in FITTED:
+            continue
+        path = f"setups.{setup.op}.join"
+        yield from (f"{path}.{key}" for key in ("joint", "friction", "smoothing", "must_carry", "serves_at"))
+        if join.by == "shrink":
+            yield from (f"{path}.heat", f"{path}.grips_first")
+        for ref in (loaded.ref(join.outer), loaded.ref(join.inner)):
+            yield f"parts.{ref.part}.surfaces.{ref.surface}.roughness"
+            yield f"parts.{ref.part}.properties"
+
+
+def _of_the_wheel(loaded: LoadedJob) -> Iterator[str]:
+    """What the wheel of a worm and its single-point cutter are computed from, and the backlash if one is required."""
     job = loaded.job
+    if job.mesh is None or job.worm is None:
+        return
+    wheel = loaded.ref(job.mesh.wheel)
+    asked = any(r.what == "backlash" for r in job.require)
+    for setup in job.setups:
+        for name, cut in setup.cut.items():
+            ref = loaded.ref(name, setup.part)
+            kind = job.cutters[cut.cutter].kind if cut.cutter is not None else ""
+            if (ref.part, ref.surface) != (wheel.part, wheel.surface) or kind != "single-point":
+                continue
+            path = f"setups.{setup.op}.cut.{name}"
+            yield from (f"{path}.depth", f"{path}.depth_from", "worm.profile", "worm.thread_thickness")
+            yield from (f"cutters.{cut.cutter}.tip_radius", f"cutters.{cut.cutter}.insert")
+            if cut.depth_from is not None:
+                touched = loaded.ref(cut.depth_from.surface, wheel.part)
+                yield f"parts.{touched.part}.surfaces.{touched.surface}.radius"
+            if asked:
+                yield from (f"{path}.depth_error", f"cutters.{cut.cutter}.width", f"cutters.{cut.cutter}.width_at")
+                yield from ("worm.material", "mesh.housing", "mesh.serves_at", f"parts.{wheel.part}.properties")
+
+
+def _of_heads(loaded: LoadedJob) -> Iterator[str]:
+    """A head that is tilted for a worm wheel: compared with the worm, with the side it leans to and how it is set."""
+    for setup in loaded.job.setups:
+        if cuts_the_wheel(loaded, setup):
+            yield from (f"setups.{setup.op}.head", "mesh.shaft_angle_error")
+            yield from (f"machines.{setup.machine}.{key}" for key in ("nose_points", "cutter_stands"))
+        elif setup.head is not None and setup.head.tilt == 0.0:
+            yield f"setups.{setup.op}.head.tilt"
+
+
+def _of_limits(loaded: LoadedJob) -> Iterator[str]:
+    for number, asked in enumerate(loaded.job.require, 1):
+        if asked.what == "backlash":
+            yield f"require[{number}].along"
+        if asked.what in ("contact-length", "contact-area"):
+            yield f"require[{number}].film"
+
+
+def _all(loaded: LoadedJob) -> Iterator[Uncomputed]:
+    job, looked = loaded.job, _looked(loaded)
     shrunk = any(s.join is not None and s.join.by == "shrink" for s in job.setups)
     if "room" in job.model_fields_set and not shrunk:  # a shaft that is not chilled has the room's temperature
         yield _one(loaded, "room", "job", "room temperature {said}")
     for name, part in job.parts.items():
-        yield from _part(loaded, name, part)
+        yield from _part(loaded, looked, name, part)
     for record, path in ((job.worm, "worm"), (job.mesh, "mesh")):
         if record is not None:
-            yield from _entries(loaded, record, path, path)
+            yield from _entries(loaded, looked, record, path, path)
     for name, cutter in job.cutters.items():
-        yield from _entries(loaded, cutter, f"cutters.{name}", f"cutter {name}")
-    leaning = {s.machine for s in job.setups if cuts_the_wheel(loaded, s)}
+        yield from _entries(loaded, looked, cutter, f"cutters.{name}", f"cutter {name}")
     for name, machine in job.machines.items():
-        for item in _entries(loaded, machine, f"machines.{name}", name):
-            if name not in leaning or not item.at.endswith((".nose_points", ".cutter_stands")):
-                yield item
+        yield from _entries(loaded, looked, machine, f"machines.{name}", name)
     for setup in job.setups:
-        yield from _setup(loaded, setup)
+        yield from _setup(loaded, looked, setup)
     for number, asked in enumerate(job.require, 1):
-        yield from _entries(loaded, asked, f"require[{number}]", f"require[{number}]")
+        yield from _entries(loaded, looked, asked, f"require[{number}]", f"require[{number}]")
 
 
 def _one(loaded: LoadedJob, path: str, owner: str, words: str, of: str = "") -> Uncomputed:
     said, key = written(loaded, path), path.rpartition(".")[2]
-    if key in _COUNTS:
-        said = said.removesuffix(f" {loaded.job.units}")
     if key == "serves_at":
         said = said.replace(", ", " to ")
     return Uncomputed(path, loaded.line(path), owner, words.format(said=said, of=of))
 
 
-def _entries(loaded: LoadedJob, record: BaseModel, path: str, owner: str, of: str = "") -> Iterator[Uncomputed]:
-    """The entries of one record that are stated; `of` names the surface they belong to."""
+def _entries(
+    loaded: LoadedJob, looked: _Looked, record: BaseModel, path: str, owner: str, of: str = ""
+) -> Iterator[Uncomputed]:
+    """The entries of one record that are stated and count for nothing; `of` names the surface they belong to."""
     for key, words in NOT_LOOKED_AT[type(record).__name__].items():
-        if getattr(record, key) not in (None, ()):
+        if getattr(record, key) not in (None, ()) and not looked.at(f"{path}.{key}"):
             yield _one(loaded, f"{path}.{key}", owner, words, of)
 
 
-def _part(loaded: LoadedJob, name: str, part: Part) -> Iterator[Uncomputed]:
+def _part(loaded: LoadedJob, looked: _Looked, name: str, part: Part) -> Iterator[Uncomputed]:
+    yield from _entries(loaded, looked, part, f"parts.{name}", name)
     for surface, node in part.surfaces.items():
         path = f"parts.{name}.surfaces.{surface}"
         if isinstance(node, Round):
@@ -147,52 +221,24 @@ def _part(loaded: LoadedJob, name: str, part: Part) -> Iterator[Uncomputed]:
                 words = "size class {said} of {of}" if size.fit is not None else "size limits {said} of {of}"
                 yield _one(loaded, f"{path}.diameter", name, words, surface)
         if isinstance(node, Round | Flat | Throat):
-            yield from _entries(loaded, node, path, name, surface)
+            yield from _entries(loaded, looked, node, path, name, surface)
         if isinstance(node, Pattern) and node.width is not None:
             yield _one(loaded, f"{path}.width", name, "width {said} of {of}", surface)
 
 
-def _setup(loaded: LoadedJob, setup: Setup) -> Iterator[Uncomputed]:
+def _setup(loaded: LoadedJob, looked: _Looked, setup: Setup) -> Iterator[Uncomputed]:
     owner, path = f"op {setup.op}", f"setups.{setup.op}"
     if setup.head is not None:
-        yield from _head(loaded, setup.head, f"{path}.head", owner)
+        yield from _entries(loaded, looked, setup.head, f"{path}.head", owner)
     if setup.divide is not None:
-        yield from _entries(loaded, setup.divide, f"{path}.divide", owner)
+        yield from _entries(loaded, looked, setup.divide, f"{path}.divide", owner)
     for surface, cut in setup.cut.items():
-        yield from _entries(loaded, cut, f"{path}.cut.{surface}", owner, surface)
+        yield from _entries(loaded, looked, cut, f"{path}.cut.{surface}", owner, surface)
     if setup.join is not None:
-        yield from _join(loaded, setup.join, f"{path}.join", owner)
-
-
-def _join(loaded: LoadedJob, join: Join, path: str, owner: str) -> Iterator[Uncomputed]:
-    """Of the heat of a shrink fit only what the sum of heat and need leaves out; of any other joint all of it."""
-    for item in _entries(loaded, join, path, owner):
-        if join.by != "shrink" or not item.at.endswith(".heat"):
-            yield item
-        elif join.heat is not None and join.heat.carry is not None:
-            yield _one(
-                loaded, f"{path}.heat.carry", owner, "carry time {said} (what it costs in heat is not taken off)"
-            )
+        yield from _entries(loaded, looked, setup.join, f"{path}.join", owner)
 
 
 def _fitted(loaded: LoadedJob) -> set[tuple[str, str]]:
     """Surfaces whose size limits are held against each other, because they are put together."""
     refs = [loaded.ref(text) for s in loaded.job.setups if s.join is not None for text in (s.join.outer, s.join.inner)]
     return {(ref.part, ref.surface) for ref in refs}
-
-
-def _head(loaded: LoadedJob, head: Head, path: str, owner: str) -> Iterator[Uncomputed]:
-    """What stands of a head beside the tilt that is compared with the worm's lead angle, where a worm wheel is cut.
-
-    A head that stands straight has nothing to compare; what the tilt does to a mid-plane found before it is not told.
-    """
-    setup = next(s for s in loaded.job.setups if s.head is head)
-    compared = (".tilt", ".uncertainty", ".leans") if cuts_the_wheel(loaded, setup) else ()
-    for item in _entries(loaded, head, path, owner):
-        if not item.at.endswith(compared) and (head.tilt != 0.0 or not item.at.endswith(".tilt")):
-            yield item
-    if head.mid_plane is None:
-        return
-    if head.mid_plane.found == "before-tilt" and head.tilt != 0.0:
-        yield _one(loaded, f"{path}.mid_plane.found", owner, "what the tilt does to a mid-plane found {said}")
-    yield from _entries(loaded, head.mid_plane, f"{path}.mid_plane", owner)

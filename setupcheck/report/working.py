@@ -11,8 +11,8 @@ from setupcheck.ledger.combine import Draws, Share, combine
 from setupcheck.notation import show
 from setupcheck.quantities.book import Answer, Book, Known, Open, Quantity, Scope
 from setupcheck.quantities.judged import Result
+from setupcheck.quantities.relations import Built
 from setupcheck.quantities.scopes import stack_of
-from setupcheck.quantities.stacks import Built
 from setupcheck.report.asked import find
 from setupcheck.report.causes import cause_in_words
 from setupcheck.report.formulas import FORMULAS, OF_A_STACK

@@ -178,6 +178,16 @@ def test_a_shaft_stated_no_colder_than_fifty_below_is_not_brittle() -> None:
     assert "" == asked(changed(TURNED, cold("freezer", ", shaft: -51 degC")))["cold-brittle-steel", 20]
 
 
+def test_what_the_certificate_says_of_a_hub_counts_for_its_cautions() -> None:
+    def with_properties(stated: str) -> tuple[str, str]:
+        return BRONZE[0], BRONZE[0].replace("\n    surfaces", f"\n    properties: {{{stated}}}\n    surfaces")
+
+    # 150 degC of the oven and its 10 K stay under a temper of 220 less 50, and pass one of 200 less 50
+    assert ("heat-above-cap", 20) not in asked(changed(TURNED, with_properties("last_temper: 220 degC")))
+    assert ("heat-above-cap", 20) in asked(changed(TURNED, with_properties("last_temper: 200 degC")))
+    assert ("hub-burst", 20) in asked(changed(TURNED, with_properties("brittle: true")))
+
+
 def test_a_press_fit_of_an_iron_hub_asks_for_hub_and_pads() -> None:
     found = asked(changed(TURNED, PRESSED, IRON))
     assert {("hub-burst", 20), ("brittle-in-press", 20), ("press-force", 20)} <= set(found)

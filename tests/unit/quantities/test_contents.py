@@ -5,6 +5,7 @@ from __future__ import annotations
 import pytest
 
 from setupcheck.quantities.contents import Content, breaks, holds, material_family
+from setupcheck.quantities.material_data import materials
 
 
 @pytest.mark.parametrize(
@@ -57,12 +58,10 @@ def test_a_name_settles_what_it_carries_and_nothing_else(
         ("20MnCr5", True),
         ("C45", False),
         ("EN AW-6082-T6", False),  # stands no more than 150 degC either, but is no steel
-        ("EN-GJL-300", None),
-        ("34CrNiMo6", None),
     ],
 )
-def test_what_splinters_is_grey_iron_and_steel_with_a_low_temper(name: str, splinters: bool | None) -> None:
-    assert splinters is breaks(name)
+def test_what_splinters_is_grey_iron_and_steel_with_a_low_temper(name: str, splinters: bool) -> None:
+    assert splinters is breaks(materials()[name])
 
 
 @pytest.mark.parametrize(

@@ -16,7 +16,7 @@ from tests.unit.report.sample import PLATE, WHEEL, changed, flat, reviewed
 SECOND = math.pi / 648_000.0
 DIVIDE = 'divide: {by: hole-circle, circle: 18, wheel: {once_per_turn: ±10"}, worm: {once_per_crank: ±4"}, setting: 2"}'
 OVEN = ("by: oven, oven_error: 10 degC", "by: hot-plate")
-TILT = ("uncertainty: 2', leans", "by: sine-bar, leans")
+TILT = ("uncertainty: 2', leans", "by: readout, leans")
 
 
 def row(what: str = "runout", value: str = "80 um", kind: str = "from memory", more: str = "") -> str:
@@ -128,12 +128,12 @@ def test_the_rounding_of_a_readout_is_held_against_its_typical_setting() -> None
 # -- the lean of a head, the heat of a hub, a length by a device
 
 
-def test_a_head_set_by_a_sine_bar_takes_its_typical_setting_and_says_so() -> None:
+def test_a_head_set_by_a_readout_takes_its_typical_setting_and_says_so() -> None:
     found = reviewed(changed(WHEEL, TILT))
     allowed = answer(found, "tilt.allowed", "40")
-    assert isinstance(allowed, Known) and {"sine-bar tilt"} == allowed.rests_on
-    assert 20.0 == pytest.approx(float(allowed.value) / SECOND)  # type: ignore[arg-type]
-    assert {"sine-bar tilt"} == rests(found, "TILT-001")
+    assert isinstance(allowed, Known) and {"readout tilt"} == allowed.rests_on
+    assert 60.0 == pytest.approx(float(allowed.value) / SECOND)  # type: ignore[arg-type]
+    assert {"readout tilt"} == rests(found, "TILT-001")
     assert [(40, "warn")] == [(f.op, f.verdict) for f in found.evaluation.findings if f.rule == "TILT-009"]
     assert "warn" == found.verdict
 
@@ -147,8 +147,10 @@ def test_a_head_set_nobody_knows_how_stays_open() -> None:
 
 def test_a_hub_on_a_hot_plate_takes_the_plates_typical_error_and_says_so() -> None:
     found = reviewed(changed(WHEEL, OVEN))
-    assert answer(found, "heat.planned_low", "70") == Known(150.0, frozenset({"hot-plate temperature error"}))
-    assert answer(found, "heat.planned_high", "70") == Known(210.0, frozenset({"hot-plate temperature error"}))
+    hub = found.loaded.job.setups[-1].join.heat.hub  # type: ignore[union-attr]
+    assert hub is not None
+    assert answer(found, "heat.planned_low", "70") == Known(hub - 30.0, frozenset({"hot-plate temperature error"}))
+    assert answer(found, "heat.planned_high", "70") == Known(hub + 30.0, frozenset({"hot-plate temperature error"}))
     assert {"hot-plate temperature error"} == rests(found, "HEAT-001") == rests(found, "HEAT-002")
     assert ["fail"] == [f.verdict for f in found.evaluation.findings if f.rule == "HEAT-002"]
     assert ["warn"] == [f.verdict for f in found.evaluation.findings if f.rule == "HEAT-009"]
@@ -184,3 +186,14 @@ def test_a_stack_says_which_typical_run_outs_it_rests_on() -> None:
     runout = [f for f in found.evaluation.findings if f.key.startswith("run-out.") and f.rule == "STACK-001"]
     assert runout and all("centres runout" in f.rests_on for f in runout)
     assert "Rests on typical values: centres runout." in flat(as_text(found, everything=True))
+
+
+def test_a_mid_plane_carried_over_the_tilt_takes_the_heads_typical_setting() -> None:
+    before = ("found: after-tilt,", "found: before-tilt, pivot: 80.0 ±0.5,")
+    stated = reviewed(changed(WHEEL, before, ("uncertainty: 2', leans", "uncertainty: 1', leans")))
+    taken = reviewed(changed(WHEEL, before, TILT))
+    for found, names in ((stated, ()), (taken, ("readout tilt",))):
+        middle = [f for f in found.evaluation.findings if f.rule == "STACK-001" and f.key.startswith("mid-plane")]
+        assert [names] == [f.rests_on for f in middle]
+    key = next(k for k in stated.results if k.startswith("mid-plane"))
+    assert stated.results[key].combined.worst.high == pytest.approx(taken.results[key].combined.worst.high)

@@ -1,0 +1,336 @@
+"""Does the cutter suit the worm: radius, ridge of contact, depth, insert, bar, tool life. Lengths mm, angles rad."""
+
+from __future__ import annotations
+
+import math
+from dataclasses import dataclass
+
+from setupcheck.jobfile.models import Round, Throat
+from setupcheck.quantities.book import Open, OutOfRange, Quantity
+from setupcheck.quantities.drive import WheelCut, drive, wheel_cut
+from setupcheck.quantities.scopes import CutEntry
+from setupcheck.quantities.shop import Floor
+from setupcheck.worm import cutter as fly
+from setupcheck.worm.geometry import fewest_teeth
+
+USUAL_FILM = 0.006
+"""Thickness of marking blue that a contact share is told for where no requirement says one [mm]. Common practice, 5 to 7 um."""
+
+
+@dataclass(frozen=True, slots=True)
+class Shape:
+    """Second-order shape of the flank that the cutter leaves: crowning A and twist B [1/mm], ends of the face."""
+
+    cut: WheelCut
+    crowning: float
+    twist: float
+
+
+def here(floor: Floor, entry: CutEntry) -> WheelCut | Open | None:
+    """The cut of the wheel, if it is this one; None for every other cut. Source: the job file."""
+    found = drive(floor)
+    if found is None:
+        return None
+    if isinstance(found, Open):
+        return found if _is_the_wheel(floor, entry) else None
+    made = wheel_cut(floor, found)
+    if isinstance(made, Open):
+        return made if _is_the_wheel(floor, entry) else None
+    return made if made is not None and made.cut is entry.cut else None
+
+
+def _is_the_wheel(floor: Floor, entry: CutEntry) -> bool:
+    """Whether this is a cut of the mesh's wheel by a single point, or by nobody knows what."""
+    job = floor.loaded.job
+    if job.mesh is None:
+        return False
+    ref = floor.loaded.ref(job.mesh.wheel)
+    for setup in job.setups:
+        for name, cut in setup.cut.items():
+            if cut is entry.cut:
+                mine = floor.loaded.ref(name, setup.part)
+                kind = job.cutters[cut.cutter].kind if cut.cutter is not None else "single-point"
+                return (mine.part, mine.surface) == (ref.part, ref.surface) and kind == "single-point"
+    return False
+
+
+def radius(cut: WheelCut) -> float:
+    """Radius of the cutter's tip circle [mm]. Source: the job file."""
+    return cut.radius
+
+
+def smallest_radius(cut: WheelCut) -> float:
+    """Tip radius below which the worm rides on the ends of the teeth [mm]: zero crowning. Source: worm.cutter."""
+    d = cut.drive
+    try:
+        return fly.smallest_radius(
+            pitch_diameter=d.pitch_diameter,
+            worm_tip_diameter=d.tip_diameter,
+            wheel_diameter=d.wheel_diameter,
+            pressure_angle=d.pressure_angle,
+            lead_angle=d.lead_angle,
+            gap_arc=d.thread,
+            clearance=max(cut.clearance, 0.0),
+        )
+    except ValueError as why:
+        raise OutOfRange(str(why)) from None
+
+
+def shape(cut: WheelCut) -> Shape:
+    """Crowning and twist of the flank, gap as wide as the thread. Source: worm.cutter (second order, near the mid-plane)."""
+    d = cut.drive
+    try:
+        over = fly.oversize(
+            cutter_radius=cut.radius, worm_tip_diameter=d.tip_diameter, clearance=max(cut.clearance, 0.0)
+        )
+        pair = {
+            "pitch_diameter": d.pitch_diameter,
+            "wheel_diameter": d.wheel_diameter,
+            "pressure_angle": d.pressure_angle,
+            "lead_angle": d.lead_angle,
+            "gap_arc": d.thread,
+            "oversize": over,
+        }
+        return Shape(cut, fly.crowning(**pair), fly.twist(**pair))
+    except ValueError as why:
+        raise OutOfRange(str(why)) from None
+
+
+def ridge_reach(shape: Shape) -> float | None:
+    """How far from the mid-plane the ridge of contact runs, one module from pitch height [mm]: 1.3 B m/(2 A).
+
+    None where there is no crowning at all (the radius is judged by itself).  Source: worm.cutter, 1.3 fitted to own simulation.
+    """
+    if shape.crowning <= 0.0:
+        return None
+    return fly.RIDGE_ALLOWANCE * shape.twist * shape.cut.drive.module / (2.0 * shape.crowning)
+
+
+def half_face(shape: Shape) -> float | Open:
+    """Half the width of the wheel's teeth [mm]. Source: the job file."""
+    width = shape.cut.drive.face_width
+    wheel = shape.cut.drive.wheel
+    return width / 2.0 if width is not None else Open((f"parts.{wheel.part}.surfaces.{wheel.surface}.width",))
+
+
+def relief(shape: Shape, half_face: float) -> float:
+    """Metal missing at the ends of the face, at pitch height [mm]: A (b/2)^2; negative: the ends ride. Source: worm.cutter."""
+    return shape.crowning * half_face**2
+
+
+def contact_area(shape: Shape, half_face: float, film: float) -> float | None:
+    """Share of a flank that a marking film touches: 2 w/b, w = sqrt(f/(A cos alpha cos g)); None without crowning.
+
+    Envelope insert, head at the lead angle, no load; 3 to 15 % low against simulation.  Source: worm.cutter.
+    """
+    if shape.crowning <= 0.0:
+        return None
+    d = shape.cut.drive
+    return fly.contact_share(
+        film,
+        crowning=shape.crowning,
+        pressure_angle=d.pressure_angle,
+        lead_angle=d.lead_angle,
+        face_width=2.0 * half_face,
+    )
+
+
+def contact_length(shape: Shape, half_face: float, film: float) -> float | None:
+    """Share of the face from one end of the marking to the other: (B m/A + 2 w)/b, at most 1; None without crowning.
+
+    The ridge runs across the face from tip to root, so the marking is longer than it is wide.  Source: worm.cutter.
+    """
+    area = contact_area(shape, half_face, film)
+    if area is None:
+        return None
+    run = shape.twist * shape.cut.drive.module / shape.crowning
+    return min(run / (2.0 * half_face) + area, 1.0)
+
+
+def usual_contact(shape: Shape, half_face: float) -> float | None:
+    """`contact_area` for a film of 6 um. Source: worm.cutter; film common practice."""
+    return contact_area(shape, half_face, USUAL_FILM)
+
+
+def clearance(cut: WheelCut) -> float:
+    """Clearance between the worm's tip and the bottom of the gap for the depth as planned [mm]. Source: geometry."""
+    return cut.clearance
+
+
+def module(cut: WheelCut) -> float:
+    """Axial module [mm]. Source: the job file."""
+    return cut.drive.module
+
+
+def insert(cut: WheelCut) -> str | Open:
+    """Whether the insert follows the envelope or the mid-plane section. Source: the job file."""
+    return cut.cutter.insert if cut.cutter.insert is not None else Open((f"{cut.cutter_path}.insert",))
+
+
+def insert_gap(shape: Shape, insert: str) -> float | None:
+    """What an insert copied from the mid-plane is too narrow by one module from pitch height, each side [mm].
+
+    (B m)^2/(4 A) cos g; 0 for an envelope; None without crowning.  Source: worm.cutter, order of size.
+    """
+    if insert == "envelope":
+        return 0.0
+    if shape.crowning <= 0.0:
+        return None
+    d = shape.cut.drive
+    return fly.insert_widening(d.module, crowning=shape.crowning, twist=shape.twist, lead_angle=d.lead_angle)
+
+
+def width_needed(cut: WheelCut, floor: Floor) -> float:
+    """Width of the insert at pitch height that just fits the thread as measured, no backlash [mm]. Source: worm.cutter."""
+    return insert_width(cut, cut.drive.thread, height=cut.pitch_height, tilt=tilt_of(floor, cut))
+
+
+def tip_width(cut: WheelCut, floor: Floor) -> float:
+    """Width of the insert at its tip that just fits the thread as measured, no backlash [mm]; an envelope is a little wider.
+
+    Source: worm.cutter, mid-plane section.
+    """
+    return insert_width(cut, cut.drive.thread, height=0.0, tilt=tilt_of(floor, cut))
+
+
+def tilt_of(floor: Floor, cut: WheelCut) -> float:
+    """Tilt of the head at that cut, else the lead angle [rad]."""
+    setup = next(s for s in floor.loaded.job.setups if s.op == cut.op)
+    return abs(setup.head.tilt) if setup.head is not None else cut.drive.lead_angle
+
+
+def insert_width(cut: WheelCut, gap_arc: float, *, height: float, tilt: float) -> float:
+    """Width of a mid-plane insert at a height above its tip for a gap at the rolling circle [mm].
+
+    Raises: OutOfRange for sizes that give no insert.  Source: worm.cutter.
+    """
+    d = cut.drive
+    try:
+        return fly.insert_widths(
+            [height],
+            axial_module=d.module,
+            wheel_teeth=d.teeth,
+            centre_distance=d.centre_distance,
+            worm_tip_diameter=d.tip_diameter,
+            clearance=cut.clearance,
+            pressure_angle=d.pressure_angle,
+            gap_arc=gap_arc,
+            tilt=tilt,
+            cutter_radius=cut.radius,
+        )[0]
+    except ValueError as why:
+        raise OutOfRange(str(why)) from None
+
+
+def early_touch(cut: WheelCut, floor: Floor) -> float | Open | None:
+    """How much earlier a turning cutter meets the corners of the throat than its bottom [mm]; 0 for a standing one.
+
+    None where the depth is not counted from a throat. Taken as turning where nothing is said.  Source: worm.cutter.
+    """
+    assert cut.cut.depth_from is not None
+    part = cut.drive.wheel.part
+    ref = floor.loaded.ref(cut.cut.depth_from.surface, part)
+    node = floor.loaded.job.parts[ref.part].surfaces[ref.surface]
+    if not isinstance(node, Throat):
+        return None
+    if cut.cut.depth_from.tool == "standing":
+        return 0.0
+    rims = [
+        s.diameter.value
+        for name, s in floor.loaded.job.parts[part].surfaces.items()
+        if isinstance(s, Round)
+        and s.kind == "cylinder"
+        and s.made != "stock"
+        and s.low < node.at < s.high
+        and (part, name) not in floor.removed
+    ]
+    if not rims:
+        return Open((f"parts.{part}.surfaces",), "no rim is drawn over the throat")
+    height = (max(rims) - node.diameter) / 2.0
+    half = math.sqrt(max(node.radius**2 - (node.radius - height) ** 2, 0.0))
+    try:
+        return fly.early_touch(throat_radius=node.radius, cutter_radius=cut.radius, throat_width=2.0 * half)
+    except ValueError as why:
+        raise OutOfRange(str(why)) from None
+
+
+def fewest(cut: WheelCut) -> float:
+    """Least count of teeth that is not undercut. Source: worm.geometry."""
+    d = cut.drive
+    shift = (d.pitch_diameter - d.reference_diameter) / (2.0 * d.module)
+    return float(math.ceil(fewest_teeth(pressure_angle=d.pressure_angle, shift=shift) - 1e-9))
+
+
+def teeth(cut: WheelCut) -> float:
+    """Teeth of the wheel. Source: the job file."""
+    return float(cut.drive.teeth)
+
+
+def overhang(entry: CutEntry, floor: Floor) -> float | Open | None:
+    """Overhang of the cutter's bar over its diameter; a boring head always has a bar, others where either is stated.
+
+    Source: the job file.
+    """
+    name = entry.cut.cutter
+    cutter = floor.loaded.job.cutters[name] if name is not None else None
+    if cutter is None or (cutter.kind != "boring-head" and cutter.overhang is None and cutter.bar_diameter is None):
+        return None
+    if cutter.overhang is None or cutter.bar_diameter is None:
+        keys = ("overhang", "bar_diameter")
+        return Open(tuple(f"cutters.{name}.{key}" for key in keys if getattr(cutter, key) is None))
+    return cutter.overhang / cutter.bar_diameter
+
+
+def changed_inside(entry: CutEntry, floor: Floor) -> str | None:
+    """inside or outside: where a tool change, due after so many gaps cut, falls by the last full round of the teeth.
+
+    None where no change is planned or the surface has no teeth.  Source: counting the gaps of all passes.
+    """
+    every = entry.cut.tool_change_after
+    if every is None:
+        return None
+    for setup in floor.loaded.job.setups:
+        for name, cut in setup.cut.items():
+            if cut is entry.cut:
+                ref = floor.loaded.ref(name, setup.part)
+                count = getattr(floor.loaded.job.parts[ref.part].surfaces[ref.surface], "count", None)
+                if count is None:
+                    return None
+                rounds = max(len(cut.passes), 1)
+                begins, ends = (rounds - 1) * count, rounds * count
+                within = (ends - 1) // every * every > begins
+                return "inside" if within else "outside"
+    return None
+
+
+_CUT = {"cut": "cutter.wheel_cut"}
+_HERE = {**_CUT, "floor": "route.floor"}
+_SHAPE = {"shape": "cutter.shape"}
+_FACE = {**_SHAPE, "half_face": "cutter.half_face"}
+
+
+def _row(name: str, unit: str, digits: int, of: object, inputs: dict[str, str], says: str) -> Quantity:
+    return Quantity(f"cutter.{name}", "cut", unit, digits, of, inputs, says)  # type: ignore[arg-type]
+
+
+SHAPE = (
+    _row("wheel_cut", "", 0, here, {"floor": "route.floor", "entry": ":"}, "worm, wheel and cutter of this cut"),
+    _row("radius", "mm", 2, radius, _CUT, "radius of the cutter's tip circle"),
+    _row("smallest_radius", "mm", 2, smallest_radius, _CUT, "radius below which the worm rides on the ends"),
+    _row("shape", "", 0, shape, _CUT, "crowning and twist of the flank"),
+    _row("half_face", "mm", 2, half_face, _SHAPE, "half the width of the teeth"),
+    _row("ridge_reach", "mm", 2, ridge_reach, _SHAPE, "reach of the contact ridge along the face"),
+    _row("relief", "um", 0, relief, _FACE, "metal missing at the ends of the face"),
+    _row("contact", "%", 1, usual_contact, _FACE, "share of a flank that 6 um of blue marks"),
+    _row("clearance", "mm", 3, clearance, _CUT, "clearance under the worm's tip for the depth as planned"),
+    _row("module", "mm", 3, module, _CUT, "axial module"),
+    _row("insert", "", 0, insert, _CUT, "profile of the insert"),
+    _row("insert_gap", "um", 1, insert_gap, {**_SHAPE, "insert": "cutter.insert"}, "what the insert is too narrow by"),
+    _row("width_needed", "mm", 4, width_needed, _HERE, "insert at pitch height for the thread, no backlash"),
+    _row("tip_width", "mm", 4, tip_width, _HERE, "insert at its tip for the thread, no backlash"),
+    _row("early_touch", "um", 0, early_touch, _HERE, "how early a turning cutter meets the throat's corners"),
+    _row("fewest_teeth", "1", 0, fewest, _CUT, "least count of teeth that is not undercut"),
+    _row("teeth", "1", 0, teeth, _CUT, "teeth of the wheel"),
+    _row("overhang", "1", 1, overhang, {"entry": ":", "floor": "route.floor"}, "overhang of the bar over its diameter"),
+    _row("tool_change", "", 0, changed_inside, {"entry": ":", "floor": "route.floor"}, "where a tool change falls"),
+)

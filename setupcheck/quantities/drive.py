@@ -1,0 +1,153 @@
+"""Worm and wheel of the job as numbers, and the cut that makes the wheel's gaps. Lengths mm, angles rad."""
+
+from __future__ import annotations
+
+import math
+from dataclasses import dataclass
+
+from setupcheck.jobfile.models import Cutter, Dimension, Toothing
+from setupcheck.jobfile.names import Ref
+from setupcheck.jobfile.setups import Cut
+from setupcheck.quantities.book import Open
+from setupcheck.quantities.joint_shape import cut_of, touched_diameter
+from setupcheck.quantities.shop import Floor
+from setupcheck.worm.geometry import lead_angle
+
+NEARLY_ZA = math.radians(5.0)
+"""Lead angle up to which other profiles pass for ZA: they differ by microns. Source: derived for small modules (from memory)."""
+
+
+@dataclass(frozen=True, slots=True)
+class Drive:
+    """Worm and wheel with everything the formulas ask for.
+
+    reference_diameter, tip_diameter   of the worm [mm];  pressure_angle axial, lead_angle at the reference diameter [rad]
+    wheel_diameter  d2 = z2 m, the rolling circle;  face_width  of its teeth, None where not stated [mm]
+    centre_distance  middle of its limits [mm];  thread  axial thickness at the reference diameter, middle or measured [mm]
+    """
+
+    wheel: Ref
+    starts: int
+    module: float
+    reference_diameter: float
+    tip_diameter: float
+    pressure_angle: float
+    lead_angle: float
+    teeth: int
+    wheel_diameter: float
+    face_width: float | None
+    centre_distance: float
+    thread: float
+
+    @property
+    def pitch_diameter(self) -> float:
+        """Diameter of the worm that rolls on the wheel's reference circle [mm]: 2 a - d2."""
+        return 2.0 * self.centre_distance - self.wheel_diameter
+
+
+def drive(floor: Floor) -> Drive | Open | None:
+    """Worm and wheel of the mesh; None where the job has none. Source: the job file; lead angle ISO 1122-2 (from memory)."""
+    mesh, worm = floor.loaded.job.mesh, floor.loaded.job.worm
+    if mesh is None or worm is None:
+        return None
+    needed = ("axial_module", "reference_diameter", "tip_diameter", "pressure_angle", "profile", "thread_thickness")
+    missing = tuple(f"worm.{key}" for key in needed if getattr(worm, key) is None)
+    if mesh.centre_distance is None:
+        missing += ("mesh.centre_distance",)
+    if missing or mesh.centre_distance is None:
+        return Open(missing)
+    assert worm.axial_module is not None and worm.reference_diameter is not None and worm.tip_diameter is not None
+    assert worm.pressure_angle is not None and worm.thread_thickness is not None
+    try:
+        lead = lead_angle(starts=worm.starts, axial_module=worm.axial_module, diameter=worm.reference_diameter)
+    except ValueError as why:
+        return Open(because=str(why))
+    if worm.profile in ("ZK", "ZC") or (worm.profile != "ZA" and lead > NEARLY_ZA):
+        return Open(because=f"a {worm.profile} worm of this lead angle is not computed, only ZA")
+    wheel = floor.loaded.ref(mesh.wheel)
+    node = floor.loaded.job.parts[wheel.part].surfaces[wheel.surface]
+    if not isinstance(node, Toothing):
+        return Open(("mesh.wheel",), f"{wheel} has no teeth")
+    return Drive(
+        wheel=wheel,
+        starts=worm.starts,
+        module=worm.axial_module,
+        reference_diameter=worm.reference_diameter,
+        tip_diameter=worm.tip_diameter,
+        pressure_angle=worm.pressure_angle,
+        lead_angle=lead,
+        teeth=node.count,
+        wheel_diameter=node.count * worm.axial_module,
+        face_width=node.width,
+        centre_distance=middle(mesh.centre_distance),
+        thread=middle(worm.thread_thickness),
+    )
+
+
+def middle(given: Dimension) -> float:
+    """The measured size, else the middle of its limits [mm]."""
+    if given.measured is not None:
+        return given.measured
+    return given.value + ((given.lower or 0.0) + (given.upper or 0.0)) / 2.0
+
+
+@dataclass(frozen=True, slots=True)
+class WheelCut:
+    """The cut that makes the wheel's gaps, by a cutter with one point.
+
+    path, cutter_path  where both stand in the job file
+    root   radius of the gap's bottom in the mid-plane [mm];  clearance  between it and the worm's tip, may be negative
+    radius  of the cutter's tip circle [mm]
+    """
+
+    drive: Drive
+    op: int
+    path: str
+    cut: Cut
+    cutter: Cutter
+    cutter_path: str
+    radius: float
+    root: float
+    clearance: float
+
+    @property
+    def pitch_height(self) -> float:
+        """Height of the rolling circle above the cutter's tip, in the mid-plane [mm]."""
+        return self.drive.wheel_diameter / 2.0 - self.root
+
+
+def wheel_cut(floor: Floor, found: Drive) -> WheelCut | Open | None:
+    """The last cut of the wheel's teeth; None where no single-point cutter makes them. Source: the job file."""
+    cut = cut_of(floor, found.wheel.part, found.wheel.surface)
+    if cut is None:
+        return None
+    op, key = next(
+        (setup.op, name)
+        for setup in reversed(floor.loaded.job.setups)
+        for name, each in setup.cut.items()
+        if each is cut
+    )
+    path = f"setups.{op}.cut.{key}"
+    if cut.cutter is None:
+        return Open((f"{path}.cutter",))
+    cutter = floor.loaded.job.cutters[cut.cutter]
+    if cutter.kind != "single-point":
+        return None
+    missing = tuple(f"{path}.{key}" for key in ("depth", "depth_from") if getattr(cut, key) is None)
+    if cutter.tip_radius is None:
+        missing += (f"cutters.{cut.cutter}.tip_radius",)
+    touched = touched_diameter(floor, found.wheel.part, cut)
+    if missing or cut.depth is None or cutter.tip_radius is None or not isinstance(touched, float):
+        return Open(missing or (f"{path}.depth_from",))
+    root = touched / 2.0 - cut.depth
+    return WheelCut(
+        drive=found,
+        op=op,
+        path=path,
+        cut=cut,
+        cutter=cutter,
+        cutter_path=f"cutters.{cut.cutter}",
+        radius=cutter.tip_radius,
+        root=root,
+        clearance=found.centre_distance - found.tip_diameter / 2.0 - root,
+    )

@@ -1,0 +1,161 @@
+"""How well the tilt is set and what it carries along: error budget, sine bar, shift of the mid-plane. Lengths mm, angles rad."""
+
+from __future__ import annotations
+
+from setupcheck.jobfile.models import Dimension
+from setupcheck.jobfile.setups import Setup
+from setupcheck.quantities.book import Open, OutOfRange, Quantity
+from setupcheck.quantities.cutter_shape import Shape
+from setupcheck.quantities.drive import middle
+from setupcheck.quantities.shop import Floor
+from setupcheck.quantities.tilting import cuts_the_wheel
+from setupcheck.worm.cutter import profile_error_of_tilt
+from setupcheck.worm.tilt import shift_after_tilt, sine_bar_angle, sine_bar_stack, tilt_error
+
+
+def worst_error(floor: Floor, set_angle: float, needed_angle: float, allowed: float) -> float | Open | None:
+    """Largest error of the angle between gaps and thread [rad]: |set - lead angle| + head + shaft angle + wobble.
+
+    Source: small angles in one plane add, worm.tilt.
+    """
+    job = floor.loaded.job
+    if job.mesh is None:
+        return None
+    wobble = _wobble(floor)
+    missing = () if job.mesh.shaft_angle_error is not None else ("mesh.shaft_angle_error",)
+    if isinstance(wobble, Open):
+        return Open((*missing, *wobble.missing), wobble.because)
+    if job.mesh.shaft_angle_error is None:
+        return Open(missing)
+    try:
+        return tilt_error(
+            set_angle=set_angle,
+            needed_angle=needed_angle,
+            head=allowed,
+            shaft_angle=job.mesh.shaft_angle_error,
+            wobble=wobble,
+        ).worst
+    except ValueError as why:
+        raise OutOfRange(str(why)) from None
+
+
+def _wobble(floor: Floor) -> float | Open:
+    """Largest lean of the finished teeth to the axis they work on [rad]; 0 where no axis is named. Source: the ledger."""
+    job = floor.loaded.job
+    if job.mesh is None or job.place is None or job.place.axis is None:
+        return 0.0
+    teeth, axis = floor.now(floor.loaded.ref(job.mesh.wheel)), floor.now(floor.loaded.ref(job.place.axis))
+    if teeth is None or axis is None or floor.body(teeth.part) is not floor.body(axis.part):
+        return Open(("place.axis",), "wheel and axis are never one piece in this route")
+    lean = teeth.lean - axis.lean
+    missing = lean.undetermined()
+    return Open(missing) if missing else lean.largest()
+
+
+def ridge_shift(shape: Shape, worst: float) -> float | None:
+    """How far the marking moves along the face for the worst error of the tilt [mm]: d tau/(2 A). Source: worm.cutter."""
+    return worst / (2.0 * shape.crowning) if shape.crowning > 0.0 else None
+
+
+def profile_error(shape: Shape, worst: float) -> float | None:
+    """What the worst error of the tilt does to the profile over two modules of height [mm]: 2 m d tau B/(2 A).
+
+    Within a factor of two of the simulated transmission error.  Source: worm.cutter.
+    """
+    if shape.crowning <= 0.0:
+        return None
+    return 2.0 * shape.cut.drive.module * profile_error_of_tilt(worst, crowning=shape.crowning, twist=shape.twist)
+
+
+def middle_found(floor: Floor, setup: Setup) -> str | Open | None:
+    """after-tilt, before-tilt or no-tilt: when the mid-plane was found; None where no head is tilted for a worm wheel.
+
+    Source: the job file.
+    """
+    if setup.head is None or setup.head.tilt == 0.0 or not cuts_the_wheel(floor.loaded, setup):
+        return None
+    if setup.head.mid_plane is None:
+        return Open((f"setups.{setup.op}.head.mid_plane",))
+    return setup.head.mid_plane.found
+
+
+def _pivot(setup: Setup) -> Dimension | None:
+    return setup.head.mid_plane.pivot if setup.head is not None and setup.head.mid_plane is not None else None
+
+
+def shift_height(setup: Setup) -> float | None:
+    """How far tilting about the pivot carries the mid-plane up or down [mm]: L sin tau; None where no pivot is stated.
+
+    Source: worm.tilt.
+    """
+    pivot = _pivot(setup)
+    if pivot is None or setup.head is None:
+        return None
+    return shift_after_tilt(abs(setup.head.tilt), pivot_distance=middle(pivot)).height
+
+
+def shift_length(setup: Setup) -> float | None:
+    """How far tilting carries the mid-plane back along the axis [mm]: L (1 - cos tau); None where no pivot is stated.
+
+    Source: worm.tilt.
+    """
+    pivot = _pivot(setup)
+    if pivot is None or setup.head is None:
+        return None
+    return shift_after_tilt(abs(setup.head.tilt), pivot_distance=middle(pivot)).length
+
+
+def blocks(setup: Setup) -> float | None:
+    """Gauge blocks that set the tilt on the sine bar [mm]: bar sin(tilt); None where none is used. Source: worm.tilt."""
+    head = setup.head
+    if head is None or head.sine_bar is None:
+        return None
+    try:
+        return sine_bar_stack(abs(head.tilt), bar=head.sine_bar)
+    except ValueError as why:
+        raise OutOfRange(str(why)) from None
+
+
+def bar_miss(setup: Setup) -> float | Open | None:
+    """Angle between the blocks as stated and the tilt as stated [rad]; None where no sine bar sets it. Source: worm.tilt."""
+    head = setup.head
+    if head is None or head.by != "sine-bar":
+        return None
+    missing = tuple(f"setups.{setup.op}.head.{key}" for key in ("sine_bar", "blocks") if getattr(head, key) is None)
+    if head.sine_bar is None or head.blocks is None:
+        return Open(missing)
+    try:
+        return abs(sine_bar_angle(middle(head.blocks), bar=head.sine_bar) - abs(head.tilt))
+    except ValueError as why:
+        raise OutOfRange(str(why)) from None
+
+
+_SETUP = {"setup": ":"}
+_CUT = {"shape": "cutter.shape", "worst": "tilt.worst_error"}
+
+HEAD = (
+    Quantity(
+        "tilt.worst_error",
+        "setup",
+        "arcmin",
+        1,
+        worst_error,
+        {"floor": "route.floor", "set_angle": "tilt.set", "needed_angle": "tilt.needed", "allowed": "tilt.allowed"},
+        "largest error of the angle between gaps and thread",
+    ),
+    Quantity("tilt.ridge_shift", "cut", "mm", 2, ridge_shift, _CUT, "shift of the marking for the worst tilt"),
+    Quantity("tilt.profile_error", "cut", "um", 1, profile_error, _CUT, "profile error for the worst tilt"),
+    Quantity(
+        "tilt.middle_found",
+        "setup",
+        "",
+        0,
+        middle_found,
+        {"floor": "route.floor", **_SETUP},
+        "when the middle was found",
+    ),
+    Quantity("tilt.shift_height", "setup", "mm", 3, shift_height, _SETUP, "rise of the mid-plane by tilting"),
+    Quantity("tilt.shift_length", "setup", "mm", 3, shift_length, _SETUP, "retreat of the mid-plane by tilting"),
+    Quantity("tilt.blocks", "setup", "mm", 4, blocks, _SETUP, "gauge blocks under the sine bar"),
+    Quantity("tilt.bar_miss", "setup", "arcmin", 2, bar_miss, _SETUP, "blocks as stated against the tilt as stated"),
+)

@@ -1,0 +1,149 @@
+"""What the hub still has at the shaft, how long it may take to seat, and the gap it may leave at the shoulder. mm, degC, s."""
+
+from __future__ import annotations
+
+import math
+
+from setupcheck.jobfile.setups import Join
+from setupcheck.physics.heating import (
+    DULL,
+    Ring,
+    cooled_temperature,
+    joining_play,
+    lowest_hub_temperature,
+    seating_time,
+    shoulder_gap,
+)
+from setupcheck.quantities.book import Open, OutOfRange, Quantity
+from setupcheck.quantities.joining import JointSizes
+from setupcheck.quantities.shop import Floor
+from setupcheck.quantities.strength import Pair
+
+LEFT_WHEN_IT_GRIPS = 0.3
+"""Share of the joining play below which a hub may bite. Source: our screening choice."""
+
+
+def ring_of(pair: Pair) -> Ring:
+    """The hub over the joint as one dull ring of the same volume. Raises: OutOfRange for sizes that are no ring.
+
+    Source: lumped capacity; emissivity of dull metal, which loses more (physics.heating).
+    """
+    length = math.fsum(s.length for s in pair.sections)
+    squares = math.fsum(s.length * s.outside**2 for s in pair.sections) / length
+    try:
+        return Ring(
+            bore=pair.diameter,
+            outside=math.sqrt(squares),
+            length=length,
+            density=pair.hub.density.value,
+            specific_heat=pair.hub.specific_heat.value,
+            emissivity=DULL,
+        )
+    except ValueError as why:
+        raise OutOfRange(str(why)) from None
+
+
+def carry_loss(floor: Floor, join: Join, pair: Pair, planned: float, op: int) -> float | Open | None:
+    """Heat lost between oven and shaft, in still air [K]: the hub's capacity against convection and radiation.
+
+    A draught, tongs and a cold bench take more.  Source: physics.heating (Churchill and Chu, Stefan-Boltzmann).
+    """
+    if join.by != "shrink":
+        return None
+    if join.heat is None or join.heat.carry is None:
+        return Open((f"setups.{op}.join.heat.carry",))
+    room = floor.loaded.job.room
+    cooled = cooled_temperature(ring_of(pair), start=planned, seconds=join.heat.carry, air=room)
+    return max(planned - cooled, 0.0)
+
+
+def at_shaft(planned: float, loss: float) -> float:
+    """Least heat the hub may still have as it goes over the shaft [degC]: planned - oven error - loss. Source: arithmetic."""
+    return lowest_hub_temperature(planned, oven_error=0.0, carry_loss=loss)
+
+
+def spare(at_shaft: float, needed: float) -> float:
+    """What the hub has above its need as it goes over the shaft [K]. Source: arithmetic."""
+    return at_shaft - needed
+
+
+def window(floor: Floor, join: Join, pair: Pair, sizes: JointSizes, at_shaft: float, needed: float) -> float | None:
+    """Time over the shaft until the hub may bite, nothing touching [s]; None where it is too cold to go on at all.
+
+    Until three tenths of the play are left.  Source: conduction through the gap, physics.heating; the share ours.
+    """
+    if at_shaft <= needed:
+        return None
+    play = joining_play(sizes.nominal)
+    closes = pair.hub.heating.high * pair.diameter  # what the bore closes for each kelvin, at most
+    bites = needed - (1.0 - LEFT_WHEN_IT_GRIPS) * play / closes
+    shaft = join.heat.shaft if join.heat is not None and join.heat.shaft is not None else floor.loaded.job.room
+    length = math.fsum(s.length for s in pair.sections)
+    return seating_time(
+        ring_of(pair), hub_temperature=at_shaft, shaft_temperature=shaft, until=bites, gap=play / 2.0, length=length
+    )
+
+
+def gap_at_shoulder(join: Join, pair: Pair, most: float) -> float | None:
+    """Largest gap that may open at the shoulder as the hub cools [mm]: U L/D, one-sided; 0 where that end grips first.
+
+    Source: physics.heating.
+    """
+    if join.by != "shrink" or join.stop is None:
+        return None
+    if join.grips_first == "shoulder-end":
+        return 0.0
+    length = math.fsum(s.length for s in pair.sections)
+    return shoulder_gap(most, diameter=pair.diameter, grip_distance=length)
+
+
+_HERE = {"floor": "route.floor", "join": ":"}
+_PAIR = {"pair": "fit.pair"}
+
+HEAT = (
+    Quantity(
+        "heat.carry_loss",
+        "join",
+        "K",
+        1,
+        carry_loss,
+        {**_HERE, **_PAIR, "planned": "heat.planned_low", "op": "@op"},
+        "heat lost on the way to the shaft",
+    ),
+    Quantity(
+        "heat.at_shaft",
+        "join",
+        "degC",
+        0,
+        at_shaft,
+        {"planned": "heat.planned_low", "loss": "heat.carry_loss"},
+        "least heat the hub still has at the shaft",
+    ),
+    Quantity(
+        "heat.spare",
+        "join",
+        "K",
+        0,
+        spare,
+        {"at_shaft": "heat.at_shaft", "needed": "heat.needed"},
+        "heat above the need at the shaft",
+    ),
+    Quantity(
+        "heat.window",
+        "join",
+        "s",
+        0,
+        window,
+        {**_HERE, **_PAIR, "sizes": "fit.sizes", "at_shaft": "heat.at_shaft", "needed": "heat.needed"},
+        "time over the shaft until the hub may bite",
+    ),
+    Quantity(
+        "heat.shoulder_gap",
+        "join",
+        "um",
+        1,
+        gap_at_shoulder,
+        {"join": ":", **_PAIR, "most": "fit.interference_most"},
+        "largest gap at the shoulder after cooling",
+    ),
+)

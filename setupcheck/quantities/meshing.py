@@ -1,0 +1,64 @@
+"""Do worm, wheel and housing close on paper, and what stands beside the backlash? Lengths mm."""
+
+from __future__ import annotations
+
+from setupcheck.jobfile.models import Mesh, Toothing
+from setupcheck.quantities.book import Open, Quantity
+from setupcheck.quantities.drive import middle
+from setupcheck.quantities.shop import Floor
+
+
+def _wheel(floor: Floor, mesh: Mesh) -> Toothing | None:
+    ref = floor.loaded.ref(mesh.wheel)
+    node = floor.loaded.job.parts[ref.part].surfaces[ref.surface]
+    return node if isinstance(node, Toothing) else None
+
+
+def circle_miss(floor: Floor, mesh: Mesh) -> float | Open | None:
+    """How far the drawn pitch circle is from count times axial module [mm]. Source: the wheel rolls on d2 = z2 m, derived."""
+    worm, wheel = floor.loaded.job.worm, _wheel(floor, mesh)
+    if worm is None or wheel is None:
+        return None
+    if worm.axial_module is None:
+        return Open(("worm.axial_module",))
+    return abs(wheel.on_circle - wheel.count * worm.axial_module)
+
+
+def distance_miss(floor: Floor, mesh: Mesh) -> float | Open | None:
+    """How far the centre distance is from (d1 + d2)/2 + x m [mm].
+
+    Source: ISO 1122-2 quantities (from memory), worm.geometry.
+    """
+    worm, wheel = floor.loaded.job.worm, _wheel(floor, mesh)
+    if worm is None or wheel is None:
+        return None
+    missing = tuple(f"worm.{key}" for key in ("axial_module", "reference_diameter") if getattr(worm, key) is None)
+    if mesh.centre_distance is None:
+        missing += ("mesh.centre_distance",)
+    if worm.axial_module is None or worm.reference_diameter is None or mesh.centre_distance is None:
+        return Open(missing)
+    closed = (worm.reference_diameter + wheel.count * worm.axial_module) / 2.0 + mesh.shift * worm.axial_module
+    return abs(middle(mesh.centre_distance) - closed)
+
+
+def end_float(floor: Floor) -> float | None:
+    """End float of the worm [mm], which reads as lost motion at the wheel; None where it is not stated. Source: the job file."""
+    worm = floor.loaded.job.worm
+    return worm.end_float if worm is not None else None
+
+
+def backlash_asked(floor: Floor, mesh: Mesh) -> str | None:
+    """asked or not-asked: whether a requirement limits the backlash; None for a mesh without a worm. Source: the job file."""
+    if floor.loaded.job.worm is None:
+        return None
+    return "asked" if any(r.what == "backlash" for r in floor.loaded.job.require) else "not-asked"
+
+
+_HERE = {"floor": "route.floor", "mesh": ":"}
+
+MESHING = (
+    Quantity("mesh.circle_miss", "mesh", "um", 1, circle_miss, _HERE, "pitch circle against count x module"),
+    Quantity("mesh.distance_miss", "mesh", "um", 1, distance_miss, _HERE, "centre distance against worm and wheel"),
+    Quantity("mesh.end_float", "mesh", "um", 1, end_float, {"floor": "route.floor"}, "end float of the worm"),
+    Quantity("mesh.backlash_asked", "mesh", "", 0, backlash_asked, _HERE, "whether a backlash is required"),
+)

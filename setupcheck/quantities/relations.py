@@ -1,0 +1,65 @@
+"""Two surfaces of one piece and the relation between them: what every stack begins with. mm, rad."""
+
+from __future__ import annotations
+
+import math
+from dataclasses import dataclass
+
+from setupcheck.jobfile.names import Ref
+from setupcheck.ledger.account import Account
+from setupcheck.ledger.figures import Figure
+from setupcheck.ledger.route import State
+from setupcheck.quantities.book import Open
+from setupcheck.quantities.requirements import Stack
+from setupcheck.quantities.shop import Floor
+
+
+@dataclass(frozen=True, slots=True)
+class Built:
+    """A stack's figure, with the levers its first-order treatment rests on.
+
+    second_order  L t^2 / 2 with the worst lean and the longest lever [mm]
+    """
+
+    figure: Figure
+    second_order: float
+
+
+def state(floor: Floor, stack: Stack, text: str, key: str) -> State | Open:
+    path = f"require[{stack.index + 1}].{key}"
+    if not text:
+        return Open((path,))
+    ref = floor.loaded.ref(text)
+    found = floor.now(ref)
+    if found is None:
+        made = floor.now(Ref(ref.part, ref.surface))
+        if made is not None:
+            raise floor.problem(
+                path,
+                f"operation {ref.op} does not cut {ref.part}.{ref.surface}",
+                "Write the op that cuts it after the @",
+            )
+        return Open((path,), f"{ref.part}.{ref.surface} is never made in this route")
+    return found
+
+
+def pair(floor: Floor, stack: Stack) -> tuple[State, State] | Open:
+    """The surface asked about and the one it refers to, both in one piece."""
+    of, about = state(floor, stack, stack.of, "of"), state(floor, stack, stack.about, "about")
+    for found in (of, about):
+        if isinstance(found, Open):
+            return found
+    assert isinstance(of, State) and isinstance(about, State)
+    if floor.body(of.part) is not floor.body(about.part):
+        raise floor.problem(
+            f"require[{stack.index + 1}]",
+            f"{of.ref} and {about.ref} are never joined in this route",
+            "Write the joining as a setup of its own",
+        )
+    return of, about
+
+
+def second_order(*, lean: Account, lever: float) -> float:
+    """L t^2 / 2 for the worst lean [mm]: what the first-order treatment leaves out. Source: cosine series."""
+    worst = lean.largest()
+    return lever * worst**2 / 2.0 if math.isfinite(worst) else 0.0

@@ -1,0 +1,112 @@
+"""What a joint carries and what a flank marks, as figures that a requirement can limit. N mm, shares of one."""
+
+from __future__ import annotations
+
+from setupcheck.jobfile.models import Round
+from setupcheck.jobfile.names import Ref
+from setupcheck.jobfile.setups import Join
+from setupcheck.ledger import figures
+from setupcheck.ledger.account import Account
+from setupcheck.ledger.causes import Cause, Mode
+from setupcheck.quantities import cutter_shape, strength
+from setupcheck.quantities.book import Open, OutOfRange
+from setupcheck.quantities.drive import Drive, WheelCut, drive, wheel_cut
+from setupcheck.quantities.friction import Friction
+from setupcheck.quantities.joining import JointSizes, limits_of, sizes
+from setupcheck.quantities.relations import Built
+from setupcheck.quantities.requirements import Stack
+from setupcheck.quantities.shop import Floor
+
+
+def torque(floor: Floor, stack: Stack) -> Built | Open:
+    """Torque that a joint holds in service over the limits of its sizes, lowest friction, with the slip factor.
+
+    T = unit (U - smoothing + what the temperature takes), straight in bore and journal.  Source: quantities.strength.
+    """
+    found = _join(floor, stack)
+    if isinstance(found, Open):
+        return found
+    join, op = found
+    limits = sizes(floor, join)
+    if not isinstance(limits, JointSizes):
+        return limits or Open(because=f"the joint of op {op} is no bore on a cylinder, which has no computed torque")
+    pair = strength.pair(floor, join, limits)
+    if pair is None:
+        return Open(because=f"the joint of op {op} does not hold by interference")
+    if isinstance(pair, Open):
+        return pair
+    parts = (strength.smoothing(floor, join, pair), strength.rubbing(floor, join, pair, op), strength.service(join, op))
+    lost, rubbing, served = parts
+    opened = [x for x in parts if isinstance(x, Open)]
+    if opened or not isinstance(lost, float) or not isinstance(rubbing, Friction) or not isinstance(served, tuple):
+        return Open(tuple(m for x in opened for m in x.missing), "; ".join(x.because for x in opened if x.because))
+    try:
+        unit = strength.torque_held(pair, strength.force_held(pair, 1.0, rubbing))
+        taken = min(pair.at(0.0, "holding", t) for t in (*served, strength.REFERENCE))
+    except OutOfRange as why:
+        return Open(because=str(why))
+    bore, journal = (_size(floor, floor.loaded.ref(text)) for text in (join.outer, join.inner))
+    account = (journal - bore) * unit
+    return Built(figures.Length(account.plus_constant(unit * (taken - lost))), 0.0)
+
+
+def _join(floor: Floor, stack: Stack) -> tuple[Join, int] | Open:
+    """The joint that `of` names by its operation; the only one where nothing is named."""
+    joins = [(s.join, s.op) for s in floor.loaded.job.setups if s.join is not None]
+    named = [(join, op) for join, op in joins if str(op) == stack.of]
+    if named:
+        return named[0]
+    if not stack.of and len(joins) == 1:
+        return joins[0]
+    if not stack.of:
+        return Open((f"require[{stack.index + 1}].of",), "" if joins else "no operation joins anything")
+    raise floor.problem(
+        f"require[{stack.index + 1}].of",
+        f"'{stack.of}' is no operation that joins two parts",
+        f"Write {' or '.join(str(op) for _, op in joins)}" if joins else "Write the joining as a setup of its own",
+    )
+
+
+def _size(floor: Floor, ref: Ref) -> Account:
+    """A size of the joint as its middle and half its limits."""
+    node = floor.loaded.job.parts[ref.part].surfaces[ref.surface]
+    path = f"parts.{ref.part}.surfaces.{ref.surface}.diameter"
+    assert isinstance(node, Round)
+    limits = limits_of(node.diameter, path)
+    assert isinstance(limits, tuple)
+    low, high = limits
+    mode: Mode = "measured" if node.diameter.measured is not None else "planned"
+    cause = Cause(
+        f"{ref.surface} of {ref.part}, within its limits", "length", high=(high - low) / 2.0, mode=mode, paths=(path,)
+    )
+    return Account.of(cause).plus_constant((low + high) / 2.0)
+
+
+def contact(floor: Floor, stack: Stack) -> Built | Open:
+    """Share of the flank (contact-area) or of the face (contact-length) that a stated film marks.
+
+    Source: quantities.cutter_shape, closed form.
+    """
+    if stack.require.film is None:
+        return Open((f"require[{stack.index + 1}].film",))
+    found = drive(floor)
+    made = wheel_cut(floor, found) if isinstance(found, Drive) else found
+    if isinstance(made, Open):
+        return made
+    if not isinstance(made, WheelCut):
+        return Open(because="contact is computed for a worm wheel cut by a single point")
+    try:
+        shape = cutter_shape.shape(made)
+        insert = cutter_shape.insert(made)
+        half = cutter_shape.half_face(shape)
+        if isinstance(insert, Open) or isinstance(half, Open):
+            return insert if isinstance(insert, Open) else half if isinstance(half, Open) else Open()
+        if insert != "envelope":
+            return Open(because="contact is computed for an insert that follows the envelope")
+        of = cutter_shape.contact_area if stack.require.what == "contact-area" else cutter_shape.contact_length
+        share = of(shape, half, stack.require.film)
+    except (OutOfRange, ValueError) as why:
+        return Open(because=str(why))
+    if share is None:
+        return Open(because="the cutter leaves no crowning, so the ends of the teeth ride")
+    return Built(figures.Length(Account().plus_constant(share)), 0.0)

@@ -1,0 +1,482 @@
+"""Does the joint hold what it must, cold and warm, does it stay elastic, and what does it do to teeth and hole? mm, N, MPa."""
+
+from __future__ import annotations
+
+import math
+from dataclasses import dataclass
+
+from setupcheck.jobfile.models import Part, Round
+from setupcheck.jobfile.setups import Join
+from setupcheck.notation import Roughness
+from setupcheck.physics import interference as fits
+from setupcheck.physics.heating import holding_temperature, interference_at, loosening_temperature
+from setupcheck.physics.materials import Material, Question, expansion_for, modulus_for
+from setupcheck.quantities.book import Open, OutOfRange, Quantity
+from setupcheck.quantities.contents import material_family
+from setupcheck.quantities.friction import Friction, friction
+from setupcheck.quantities.joining import JointSizes
+from setupcheck.quantities.joint_shape import Section, sections
+from setupcheck.quantities.shop import Floor
+from setupcheck.quantities.stuff import material_of, strength_of
+
+FITTED = ("shrink", "press")
+"""Ways of joining that hold by interference."""
+SLIP_FACTOR = 1.2
+"""What a joint must hold over what it must carry. Source: 1.2 to 1.5 (from memory); the lower end, as friction is low already."""
+ON_YIELD = 1.0
+"""Safety on yield of ductile parts. Source: DIN 7190, 1.0 to 1.3 (from memory); yields are least values already."""
+ON_BREAKING = 2.0
+"""Safety of a brittle hub on its tensile strength. Source: 2 to 3 (from memory)."""
+RZ_PER_RA = 7.0
+"""Rz over Ra where only Ra is stated. Source: 4 to 7 for machined surfaces (from memory); the end that loses more."""
+REFERENCE = 20.0  # degC of all sizes, ISO 1
+
+
+@dataclass(frozen=True, slots=True)
+class Pair:
+    """Both materials of a joint, and its sections."""
+
+    hub: Material
+    shaft: Material
+    hub_part: str
+    shaft_part: str
+    diameter: float
+    sections: tuple[Section, ...]
+
+    def joints(self, question: Question) -> tuple[fits.Joint, ...]:
+        """Each section with the moduli that are safe for a question. Raises: OutOfRange for sizes that are no joint."""
+        try:
+            return tuple(
+                fits.Joint(
+                    diameter=self.diameter,
+                    hub_outside=s.outside,
+                    shaft_hole=s.hole,
+                    hub_modulus=modulus_for(question, "hub", self.hub).value,
+                    hub_poisson=self.hub.poisson.value,
+                    shaft_modulus=modulus_for(question, "shaft", self.shaft).value,
+                    shaft_poisson=self.shaft.poisson.value,
+                )
+                for s in self.sections
+            )
+        except ValueError as why:
+            raise OutOfRange(str(why)) from None
+
+    def at(self, interference: float, question: Question, temperature: float) -> float:
+        """Interference at a temperature of the whole joint, expansions safe for the question [mm]."""
+        return interference_at(
+            interference,
+            diameter=self.diameter,
+            hub_expansion=expansion_for(question, "hub", self.hub, temperature=temperature).value,
+            hub_temperature=temperature,
+            shaft_expansion=expansion_for(question, "shaft", self.shaft, temperature=temperature).value,
+            shaft_temperature=temperature,
+        )
+
+
+def pair(floor: Floor, join: Join, sizes: JointSizes) -> Pair | Open | None:
+    """Materials and sections of a joint that holds by interference; None for any other. Source: job file, materials.yaml."""
+    if join.by not in FITTED:
+        return None
+    shape = sections(floor, join)
+    if shape is None:
+        return None
+    outer, inner = floor.loaded.ref(join.outer).part, floor.loaded.ref(join.inner).part
+    hub, shaft = material_of(floor, outer), material_of(floor, inner)
+    opened = [x for x in (shape, hub, shaft) if isinstance(x, Open)]
+    if isinstance(shape, Open) or isinstance(hub, Open) or isinstance(shaft, Open):
+        return Open(tuple(m for x in opened for m in x.missing), "; ".join(x.because for x in opened if x.because))
+    return Pair(hub, shaft, outer, inner, sizes.nominal, shape)
+
+
+def smoothing(floor: Floor, join: Join, pair: Pair) -> float | Open:
+    """Interference lost where the peaks of both surfaces flatten, on diameter [mm]: 0.8 (Rz hub + Rz shaft).
+
+    Source: DIN 7190 (from memory); the factor is not settled, `smoothing` in the join changes it.
+    """
+    heights, missing = [], []
+    for text in (join.outer, join.inner):
+        ref = floor.loaded.ref(text)
+        node = floor.loaded.job.parts[ref.part].surfaces[ref.surface]
+        given = node.roughness if isinstance(node, Round) else None
+        if given is None:
+            missing.append(f"parts.{ref.part}.surfaces.{ref.surface}.roughness")
+        else:
+            heights.append(_rz(given))
+    if missing:
+        return Open(tuple(missing))
+    factor = join.smoothing if join.smoothing is not None else fits.SMOOTHING_FACTOR
+    return fits.smoothing_loss(hub_roughness=heights[0], shaft_roughness=heights[1], factor=factor)
+
+
+def _rz(given: Roughness) -> float:
+    return given.height * (RZ_PER_RA if given.kind == "Ra" else 1.0)
+
+
+def service(join: Join, op: int) -> tuple[float, float] | Open:
+    """Coldest and warmest temperature the joint works at [degC]. Source: the job file."""
+    return join.serves_at if join.serves_at is not None else Open((f"setups.{op}.join.serves_at",))
+
+
+def grip_least(pair: Pair, least: float, smoothing: float, service: tuple[float, float]) -> float:
+    """Least interference in service [mm]: loosest pair, smoothed, at the temperature that takes most of it.
+
+    U = U_min - smoothing + D [alpha_I (T - 20) - alpha_A (T - 20)], hub expansion high, shaft low.  Source: physics.heating.
+    """
+    return min(pair.at(least - smoothing, "holding", t) for t in (*service, REFERENCE))
+
+
+def grip_most(pair: Pair, most: float, service: tuple[float, float]) -> float:
+    """Largest interference in service or on the bench [mm]: tightest pair, nothing smoothed, at its worst temperature.
+
+    Source: physics.heating.
+    """
+    return max(pair.at(most, "strength", t) for t in (*service, REFERENCE))
+
+
+def limit_of(floor: Floor, pair: Pair) -> tuple[float, str] | Open:
+    """(interference on diameter at which the weaker part leaves its elastic range [mm], which part and by what criterion).
+
+    Ductile: p = R_e (1 - Q^2)/sqrt(3); brittle hub: tangential stress R_m/2; the least over all sections.
+    Source: DIN 7190 (from memory), physics.interference.
+    """
+    hub, shaft = strength_of(floor, pair.hub_part, pair.hub), strength_of(floor, pair.shaft_part, pair.shaft)
+    missing = tuple(m for x in (hub, shaft) if isinstance(x, Open) for m in x.missing)
+    if isinstance(hub, Open) or isinstance(shaft, Open):
+        return Open(missing)
+    found = [
+        fits.elastic_limit(
+            joint,
+            hub_strength=hub,
+            shaft_yield=shaft,
+            hub_safety=ON_BREAKING if pair.hub.brittle else ON_YIELD,
+            shaft_safety=ON_YIELD,
+            hub_brittle=pair.hub.brittle,
+        )
+        for joint in pair.joints("strength")
+    ]
+    worst = min(found, key=lambda limit: limit.interference)
+    return worst.interference, f"{worst.weaker}, by {worst.criterion}"
+
+
+def elastic(limit: tuple[float, str]) -> float:
+    """Interference on diameter up to which the weaker part stays elastic [mm]. Source: `limit_of`."""
+    return limit[0]
+
+
+def weaker(limit: tuple[float, str]) -> str:
+    """The part that gives first, and the criterion. Source: `limit_of`."""
+    return limit[1]
+
+
+def pressure_most(pair: Pair, grip: float) -> float:
+    """Highest pressure in the joint [MPa], in its stiffest section at the largest interference. Source: Lamé."""
+    return max(fits.joint_pressure(j, interference=grip) for j in pair.joints("strength"))
+
+
+def pressure_least(pair: Pair, grip: float) -> float:
+    """Lowest pressure in the joint [MPa], in its softest section at the least interference. Source: Lamé."""
+    return min(fits.joint_pressure(j, interference=grip) for j in pair.joints("holding"))
+
+
+def hoop_most(pair: Pair, grip: float) -> float:
+    """Largest tangential stress at the hub's bore [MPa]. Source: Lamé."""
+    return max(
+        fits.stresses(j, pressure=fits.joint_pressure(j, interference=grip)).hub_bore_tangential
+        for j in pair.joints("strength")
+    )
+
+
+def rubbing(floor: Floor, join: Join, pair: Pair, op: int) -> Friction | Open:
+    """Friction of the joint: as stated, else by materials, way of joining and state of the joint.
+
+    Source: the job file, else rules/data/friction.yaml (from memory).
+    """
+    if join.friction is not None:
+        return Friction(join.friction, join.friction, "shop record")
+    path = f"setups.{op}.join"
+    if join.joint is None:
+        return Open((f"{path}.joint",))
+    hub, shaft = (_family(floor.loaded.job.parts[name], found) for name, found in _both(pair))
+    found = friction(hub=hub, shaft=shaft, by=join.by, joint=join.joint)
+    if found is None:
+        because = f"no friction is known for {hub} on {shaft}, {join.by}, {join.joint}"
+        return Open((f"{path}.friction",), because)
+    return found
+
+
+def _both(pair: Pair) -> tuple[tuple[str, Material], tuple[str, Material]]:
+    return (pair.hub_part, pair.hub), (pair.shaft_part, pair.shaft)
+
+
+def _family(part: Part, found: Material) -> str:
+    return found.family if found.family != "other" else material_family(part.material or "")
+
+
+def friction_low(rubbing: Friction) -> float:
+    """Lowest friction the joint may have when it slips. Source: `rubbing`."""
+    return rubbing.low
+
+
+def force_held(pair: Pair, grip: float, rubbing: Friction) -> float:
+    """Force that the loosest joint holds at its seat in service [N]: sum of mu p pi D L over the sections, over 1.2.
+
+    Source: Coulomb friction and Lamé, DIN 7190's steps (from memory).
+    """
+    slices = [fits.Slice(j, s.length) for j, s in zip(pair.joints("holding"), pair.sections, strict=True)]
+    return fits.sliced_axial_capacity(
+        slices, interference=max(grip, 0.0), friction=rubbing.low, slip_factor=SLIP_FACTOR
+    )
+
+
+def torque_held(pair: Pair, force: float) -> float:
+    """Torque that the loosest joint holds in service, with nothing along the axis [N mm]: F D/2. Source: geometry."""
+    return force * pair.diameter / 2.0
+
+
+def force_asked(join: Join, pair: Pair) -> float | None:
+    """Force at the seat that the joint must carry [N]: sqrt(F^2 + (2 T/D)^2); None where nothing is stated.
+
+    Source: both friction forces at right angles, derived here.
+    """
+    if not join.must_carry:
+        return None
+    asked = join.must_carry
+    torque = asked["torque"].value if "torque" in asked else 0.0
+    axial = asked["axial_force"].value if "axial_force" in asked else 0.0
+    return math.hypot(axial, 2.0 * torque / pair.diameter)
+
+
+def press_force(pair: Pair, most: float, rubbing: Friction, join: Join) -> float | None:
+    """Force at the end of pressing in [N], tightest pair, highest friction; None for a shrink fit. Source: Coulomb, Lamé."""
+    if join.by != "press":
+        return None
+    return math.fsum(
+        fits.press_force(
+            fits.joint_pressure(j, interference=most), friction=rubbing.high, diameter=pair.diameter, length=s.length
+        )
+        for j, s in zip(pair.joints("strength"), pair.sections, strict=True)
+    )
+
+
+def holds_to(pair: Pair, least: float, smoothing: float, rubbing: Friction, asked: float) -> float:
+    """Temperature of the whole joint up to which the loosest pair still holds what it must [degC]. Source: physics.heating."""
+    unit = force_held(pair, 1.0, rubbing)  # for each mm of interference, as pressure is straight in it
+    return _finite(
+        holding_temperature(least - smoothing, needed=asked / unit, diameter=pair.diameter, **_expansions(pair))
+    )
+
+
+def loosens_at(pair: Pair, least: float, smoothing: float) -> float:
+    """Temperature of the whole joint at which the loosest pair has no interference left [degC]. Source: physics.heating."""
+    return _finite(loosening_temperature(least - smoothing, diameter=pair.diameter, **_expansions(pair)))
+
+
+def _expansions(pair: Pair) -> dict[str, float]:
+    warm = 100.0
+    return {
+        "hub_expansion": expansion_for("holding", "hub", pair.hub, temperature=warm).value,
+        "shaft_expansion": expansion_for("holding", "shaft", pair.shaft, temperature=warm).value,
+    }
+
+
+def _finite(temperature: float) -> float:
+    if math.isfinite(temperature):
+        return temperature
+    if temperature > 0.0:
+        raise OutOfRange("the hub does not outgrow its shaft, so warmth does not loosen it")
+    raise OutOfRange("the joint does not hold at any temperature")
+
+
+def growth_most(pair: Pair, grip: float) -> float | None:
+    """Largest growth of the hub on its tooth circle, on diameter [mm]; None where it bears no teeth cut before the joint.
+
+    Source: Lamé's displacement at the root circle, which the teeth ride on.
+    """
+    return _growth(pair, grip, largest=True)
+
+
+def growth_least(pair: Pair, grip: float) -> float | None:
+    """Least growth of the hub on its tooth circle, on diameter [mm]; None as above. Source: Lamé's displacement."""
+    return _growth(pair, max(grip, 0.0), largest=False)
+
+
+def _growth(pair: Pair, grip: float, *, largest: bool) -> float | None:
+    question: Question = "growth" if largest else "holding"
+    grown = [
+        fits.hub_growth(j, pressure=fits.joint_pressure(j, interference=grip), at_diameter=s.outside)
+        for j, s in zip(pair.joints(question), pair.sections, strict=True)
+        if s.toothed
+    ]
+    return (max if largest else min)(grown, default=None)
+
+
+def hole_closing(pair: Pair, grip: float) -> float | None:
+    """How much the shaft's hole closes on diameter at the largest interference [mm]; None for a solid one. Source: Lamé."""
+    closed = [fits.hole_closing(j, pressure=fits.joint_pressure(j, interference=grip)) for j in pair.joints("closing")]
+    return max((c for c in closed if c is not None), default=None)
+
+
+def length_ratio(pair: Pair) -> float:
+    """Length of the joint over its diameter. Source: the drawing."""
+    return math.fsum(s.length for s in pair.sections) / pair.diameter
+
+
+def growth_uncounted(floor: Floor, growth: float, join: Join, op: int) -> float | None:
+    """Growth of finished teeth that no backlash requirement counts, on diameter [mm]; None where the teeth are cut later.
+
+    Source: order of the route.
+    """
+    asked = any(r.what == "backlash" for r in floor.loaded.job.require)
+    part = floor.loaded.ref(join.outer).part
+    return None if not teeth_before(floor, part, op) else 0.0 if asked else growth
+
+
+def teeth_before(floor: Floor, part: str, op: int) -> bool:
+    """Whether teeth of a part are there when operation `op` joins it, and not cut again afterwards."""
+    last: dict[str, int] = {}
+    for setup in floor.loaded.job.setups:
+        for key in setup.cut:
+            ref = floor.loaded.ref(key, setup.part)
+            if ref.part == part and floor.loaded.job.parts[part].surfaces[ref.surface].kind == "teeth":
+                last[ref.surface] = setup.op
+    return bool(last) and all(made < op for made in last.values())
+
+
+_HERE = {"floor": "route.floor", "join": ":"}
+_PAIR = {"pair": "fit.pair"}
+_LOOSE = {"least": "fit.interference_least", "smoothing": "fit.smoothing"}
+
+STRENGTH = (
+    Quantity("fit.pair", "join", "", 0, pair, {**_HERE, "sizes": "fit.sizes"}, "materials and sections of the joint"),
+    Quantity("fit.smoothing", "join", "um", 1, smoothing, {**_HERE, **_PAIR}, "interference lost to flattened peaks"),
+    Quantity("fit.service", "join", "", 0, service, {"join": ":", "op": "@op"}, "coldest and warmest in service"),
+    Quantity(
+        "fit.grip_least",
+        "join",
+        "um",
+        1,
+        grip_least,
+        {**_PAIR, **_LOOSE, "service": "fit.service"},
+        "least interference in service",
+    ),
+    Quantity(
+        "fit.grip_most",
+        "join",
+        "um",
+        1,
+        grip_most,
+        {**_PAIR, "most": "fit.interference_most", "service": "fit.service"},
+        "largest interference in service",
+    ),
+    Quantity(
+        "fit.limit",
+        "join",
+        "",
+        0,
+        limit_of,
+        {"floor": "route.floor", **_PAIR},
+        "where the weaker part leaves its range",
+    ),
+    Quantity(
+        "fit.elastic", "join", "um", 1, elastic, {"limit": "fit.limit"}, "interference up to which all is elastic"
+    ),
+    Quantity("fit.weaker", "join", "", 0, weaker, {"limit": "fit.limit"}, "the part that gives first"),
+    Quantity(
+        "fit.pressure_most", "join", "MPa", 1, pressure_most, {**_PAIR, "grip": "fit.grip_most"}, "highest pressure"
+    ),
+    Quantity(
+        "fit.pressure_least", "join", "MPa", 1, pressure_least, {**_PAIR, "grip": "fit.grip_least"}, "lowest pressure"
+    ),
+    Quantity(
+        "fit.hoop", "join", "MPa", 1, hoop_most, {**_PAIR, "grip": "fit.grip_most"}, "hoop stress at the hub's bore"
+    ),
+    Quantity(
+        "fit.rubbing", "join", "", 0, rubbing, {**_HERE, **_PAIR, "op": "@op"}, "friction of the joint, low and high"
+    ),
+    Quantity("fit.friction", "join", "1", 2, friction_low, {"rubbing": "fit.rubbing"}, "lowest friction of the joint"),
+    Quantity(
+        "fit.force_held",
+        "join",
+        "N",
+        0,
+        force_held,
+        {**_PAIR, "grip": "fit.grip_least", "rubbing": "fit.rubbing"},
+        "force the loosest joint holds at its seat",
+    ),
+    Quantity(
+        "fit.torque_held",
+        "join",
+        "N*m",
+        1,
+        torque_held,
+        {**_PAIR, "force": "fit.force_held"},
+        "torque the loosest joint holds",
+    ),
+    Quantity(
+        "fit.force_asked",
+        "join",
+        "N",
+        0,
+        force_asked,
+        {"join": ":", **_PAIR},
+        "force at the seat the joint must carry",
+    ),
+    Quantity(
+        "fit.press_force",
+        "join",
+        "N",
+        0,
+        press_force,
+        {**_PAIR, "most": "fit.interference_most", "rubbing": "fit.rubbing", "join": ":"},
+        "force at the end of pressing in",
+    ),
+    Quantity(
+        "fit.holds_to",
+        "join",
+        "degC",
+        0,
+        holds_to,
+        {**_PAIR, **_LOOSE, "rubbing": "fit.rubbing", "asked": "fit.force_asked"},
+        "temperature up to which the joint holds what it must",
+    ),
+    Quantity(
+        "fit.loosens_at", "join", "degC", 0, loosens_at, {**_PAIR, **_LOOSE}, "temperature at which nothing interferes"
+    ),
+    Quantity(
+        "fit.growth_most",
+        "join",
+        "um",
+        1,
+        growth_most,
+        {**_PAIR, "grip": "fit.grip_most"},
+        "largest growth of the tooth circle",
+    ),
+    Quantity(
+        "fit.growth_least",
+        "join",
+        "um",
+        1,
+        growth_least,
+        {**_PAIR, "grip": "fit.grip_least"},
+        "least growth of the tooth circle",
+    ),
+    Quantity(
+        "fit.growth_uncounted",
+        "join",
+        "um",
+        1,
+        growth_uncounted,
+        {"floor": "route.floor", "growth": "fit.growth_most", "join": ":", "op": "@op"},
+        "growth of finished teeth that no backlash counts",
+    ),
+    Quantity(
+        "fit.hole_closing",
+        "join",
+        "um",
+        1,
+        hole_closing,
+        {**_PAIR, "grip": "fit.grip_most"},
+        "closing of the shaft's hole",
+    ),
+    Quantity("fit.length_ratio", "join", "1", 2, length_ratio, _PAIR, "length of the joint over its diameter"),
+)
