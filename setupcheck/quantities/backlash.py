@@ -16,7 +16,7 @@ from setupcheck.ledger.causes import Cause
 from setupcheck.ledger.figures import OverATurn
 from setupcheck.notation import NotationError, length
 from setupcheck.physics.materials import Range
-from setupcheck.quantities import strength
+from setupcheck.quantities import pairing, strength
 from setupcheck.quantities.book import Open, OutOfRange
 from setupcheck.quantities.causes import Entry, length_error, size_error
 from setupcheck.quantities.cutter_shape import insert_width, tilt_of
@@ -167,7 +167,7 @@ def _growth(floor: Floor, found: Drive) -> Account | Open:
     slope = math.tan(found.pressure_angle)
     for setup in floor.loaded.job.setups:
         join = setup.join
-        if join is None or floor.loaded.ref(join.outer).part != found.wheel.part or join.by not in strength.FITTED:
+        if join is None or floor.loaded.ref(join.outer).part != found.wheel.part or join.by not in pairing.FITTED:
             continue
         if not strength.teeth_before(floor, found.wheel.part, setup.op):
             continue
@@ -191,12 +191,12 @@ def growth(floor: Floor, join: Join, op: int) -> Span | Open:
     limits = sizes(floor, join)
     if not isinstance(limits, JointSizes):
         return limits if limits is not None else Span(0.0, 0.0)
-    joint, served = strength.pair(floor, join, limits), strength.service(join, op)
-    lost = strength.smoothing(floor, join, joint) if isinstance(joint, strength.Pair) else None
+    joint, served = pairing.pair(floor, join, limits), pairing.service(join, op)
+    lost = pairing.smoothing(floor, join, joint) if isinstance(joint, pairing.Pair) else None
     opened = [x for x in (joint, served, lost) if isinstance(x, Open)]
     if opened:
         return _merged(opened)
-    if not isinstance(joint, strength.Pair) or not isinstance(lost, float) or isinstance(served, Open):
+    if not isinstance(joint, pairing.Pair) or not isinstance(lost, float) or isinstance(served, Open):
         return Span(0.0, 0.0)
     try:
         most = strength.growth_most(joint, strength.grip_most(joint, interference_most(limits), served))

@@ -16,8 +16,8 @@ from setupcheck.physics.heating import (
 )
 from setupcheck.quantities.book import Open, OutOfRange, Quantity
 from setupcheck.quantities.joining import JointSizes
+from setupcheck.quantities.pairing import Pair
 from setupcheck.quantities.shop import Floor
-from setupcheck.quantities.strength import Pair
 
 LEFT_WHEN_IT_GRIPS = 0.3
 """Share of the joining play below which a hub may bite. Source: our screening choice."""

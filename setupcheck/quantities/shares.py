@@ -8,7 +8,7 @@ from setupcheck.jobfile.setups import Join
 from setupcheck.ledger import figures
 from setupcheck.ledger.account import Account
 from setupcheck.ledger.causes import Cause, Mode
-from setupcheck.quantities import cutter_shape, strength
+from setupcheck.quantities import cutter_shape, pairing, strength
 from setupcheck.quantities.book import Open, OutOfRange
 from setupcheck.quantities.drive import Drive, WheelCut, drive, wheel_cut
 from setupcheck.quantities.friction import Friction
@@ -30,12 +30,12 @@ def torque(floor: Floor, stack: Stack) -> Built | Open:
     limits = sizes(floor, join)
     if not isinstance(limits, JointSizes):
         return limits or Open(because=f"the joint of op {op} is no bore on a cylinder, which has no computed torque")
-    pair = strength.pair(floor, join, limits)
+    pair = pairing.pair(floor, join, limits)
     if pair is None:
         return Open(because=f"the joint of op {op} does not hold by interference")
     if isinstance(pair, Open):
         return pair
-    parts = (strength.smoothing(floor, join, pair), strength.rubbing(floor, join, pair, op), strength.service(join, op))
+    parts = (pairing.smoothing(floor, join, pair), pairing.rubbing(floor, join, pair, op), pairing.service(join, op))
     lost, rubbing, served = parts
     opened = [x for x in parts if isinstance(x, Open)]
     if opened or not isinstance(lost, float) or not isinstance(rubbing, Friction) or not isinstance(served, tuple):

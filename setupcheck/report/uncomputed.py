@@ -11,7 +11,7 @@ from pydantic import BaseModel
 from setupcheck.jobfile.models import Flat, Part, Pattern, Round, Throat
 from setupcheck.jobfile.reading import LoadedJob
 from setupcheck.jobfile.setups import Setup
-from setupcheck.quantities.strength import FITTED
+from setupcheck.quantities.pairing import FITTED
 from setupcheck.quantities.tilting import cuts_the_wheel
 from setupcheck.report.written import written
 

@@ -151,7 +151,8 @@ def _made_of(loaded: LoadedJob, book: Book, scope: Scope) -> Iterator[str]:
 def _causes(loaded: LoadedJob, book: Book, shares: Sequence[Share], base: float, unit: str) -> Iterator[str]:
     """Every cause with what it does to the figure, what is stated of it, and the line where."""
     fine, digits = finer(unit, inches=book.inches)
-    yield "  causes, biggest first:" if shares else "  no cause reaches it: both surfaces share all their errors"
+    none = "it follows from the sizes alone" if base else "both surfaces share all their errors"
+    yield "  causes, biggest first:" if shares else f"  no cause reaches it: {none}"
     for share in shares:
         yield from wrap(
             f"{cause_in_words(share.cause.key)}: gives {show(share.worst, fine, digits)}, {share.share * 100:.0f} % of "

@@ -357,14 +357,28 @@ def test_a_tilt_that_cannot_be_told_is_open_with_the_key_to_fill(gone: str, key:
 @pytest.mark.parametrize(
     ("good", "bad", "rules"),
     [
-        pytest.param("hub: 180 degC", "hub: 130 degC", {"HEAT-001"}, id="heated for the nominal interference"),
-        pytest.param("hub: 180 degC", "hub: 200 degC", {"HEAT-002"}, id="oven error forgotten at the cap"),
+        pytest.param("hub: 175 degC", "hub: 130 degC", {"HEAT-001"}, id="heated for the nominal interference"),
+        pytest.param("hub: 175 degC", "hub: 195 degC", {"HEAT-002"}, id="oven error forgotten at the cap"),
         pytest.param(
-            "diameter: 32.041 ±0.003", "diameter: 32.010 ±0.003", {"FIT-001"}, id="journal too small for the class"
+            "diameter: 32.030 ±0.003",
+            "diameter: 32.010 ±0.003",
+            {"FIT-001", "FIT-003", "STACK-002"},
+            id="journal too small for the class",
         ),
         pytest.param(
-            "diameter: 32.041 ±0.003", "diameter: 31.990 ±0.003", {"FIT-001"}, id="a clearance, not an interference"
+            "diameter: 32.030 ±0.003",
+            "diameter: 31.990 ±0.003",
+            {"FIT-001", "FIT-003", "STACK-002"},
+            id="a clearance, not an interference",
         ),
+        pytest.param(
+            "diameter: 32.030 ±0.003",
+            "diameter: 32.045 ±0.003",
+            {"FIT-004", "HEAT-001"},
+            id="more interference than the hub stands",
+        ),
+        pytest.param("torque: 40 N m}", "torque: 90 N m}", {"FIT-003"}, id="more torque than the joint holds"),
+        pytest.param("[5 degC, 45 degC]", "[5 degC, 75 degC]", {"FIT-003", "STACK-002"}, id="loose when it is warm"),
     ],
 )
 def test_a_joint_that_will_not_go_on_or_not_hold_is_caught(good: str, bad: str, rules: set[str]) -> None:
@@ -378,11 +392,16 @@ def test_a_joint_that_will_not_go_on_or_not_hold_is_caught(good: str, bad: str, 
 @pytest.mark.parametrize(
     ("gone", "instead", "key"),
     [
-        ("hub: 180 degC, ", "", "setups.70.join.heat.hub"),
+        ("hub: 175 degC, ", "", "setups.70.join.heat.hub"),
         (" by: oven, oven_error: 10 degC,", "", "setups.70.join.heat.oven_error"),
         ("material: CuSn12-C\n", "\n", "parts.wheel.material"),
         ("material: CuSn12-C\n", "material: unobtainium\n", "parts.wheel.material"),
-        ("diameter: 32 H6,", "diameter: 32,", "parts.wheel.surfaces.bore.diameter"),
+        ("diameter: 32 H5,", "diameter: 32,", "parts.wheel.surfaces.bore.diameter"),
+        (", roughness: Rz 2.5 um}", "}", "parts.wheel.surfaces.bore.roughness"),
+        ("      joint: degreased\n", "", "setups.70.join.joint"),
+        ("      serves_at: [5 degC, 45 degC]\n", "", "setups.70.join.serves_at"),
+        (", carry: 12 s", "", "setups.70.join.heat.carry"),
+        ("on_circle: 108, at: 12, width: 15}", "on_circle: 108, at: 12}", "parts.wheel.surfaces.teeth.width"),
     ],
 )
 def test_a_joint_that_cannot_be_told_is_open_with_the_key_to_fill(gone: str, instead: str, key: str) -> None:
@@ -399,10 +418,10 @@ def test_a_joint_that_cannot_be_told_is_open_with_the_key_to_fill(gone: str, ins
 
 
 def test_the_heat_of_the_wheel_is_the_sum_on_paper() -> None:
-    # 32.044 over 32.000: 44 um; usual play 32 um; both sizes at 20 degC, room at 20: 76 um / (32 mm x 17.0e-6 /K) = 139.7 K
+    # 32.033 over 32.000: 33 um; usual play 32 um; both sizes at 20 degC, room at 20: 65 um / (32 mm x 17.0e-6 /K) = 119.5 K
     # expansion of CuSn12 low end 17.0e-6 /K as listed in rules/data/materials.yaml
     found = judged(TEXTS[WHEEL])
     scope = found.book.instances("join")[0]
     needed = found.book.get("heat.needed", scope)
     assert isinstance(needed, Known)
-    assert 159.7 == pytest.approx(float(str(needed.value)), abs=0.1)
+    assert 139.5 == pytest.approx(float(str(needed.value)), abs=0.1)

@@ -272,7 +272,7 @@ class Writer:
         }
         self.truth.values[f"setups.{join.op}.join.stop.spacers[1].length", ""] = complex(join.seat.spacer_error)
         if not join.offset:
-            return {"op": join.op, "join": node | {"by": "shrink"}}
+            return {"op": join.op, "join": node | {"by": "shrink", "grips_first": "shoulder-end"}}
         node |= {"by": "bond", "fit_error": reading(play, sign=-1.0, per=0.5)}
         return {"op": join.op, "join": node}
 

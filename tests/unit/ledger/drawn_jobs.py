@@ -186,6 +186,7 @@ def jobs(draw: st.DrawFn) -> Node:
     how = draw(st.sampled_from(["shrink", "slide", "bond"]))
     joint |= {"by": how} | ({"clearance": [draw(um(1, 4)), draw(um(5, 20))]} if how == "slide" else {})
     joint |= {"fit_error": draw(um(1, 20))} if how == "bond" else {}
+    joint |= {"grips_first": "shoulder-end"} if how == "shrink" else {}  # no gap at the shoulder
     ring: Node = {"each": {"radial": draw(um(1, 15)), "tangential": draw(um(1, 15))}}
     if draw(st.booleans()):
         ring["spindle_to_axis"] = {"x": "35.000 ±0.008", "y": "0 ±0.006"}

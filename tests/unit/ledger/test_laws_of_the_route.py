@@ -215,7 +215,10 @@ def known(job: Node) -> Node:
         if "join" in step:
             # the shank is fitted without play and nothing is stacked on it
             join = step["join"]
-            step["join"] = {k: v for k, v in join.items() if k not in ("clearance", "fit_error")} | {"by": "shrink"}
+            step["join"] = {k: v for k, v in join.items() if k not in ("clearance", "fit_error")} | {
+                "by": "shrink",
+                "grips_first": "shoulder-end",
+            }
             step["join"]["mounted_at"] = join.get("mounted_at", "30 deg")
             continue
         if "divide" in step:
@@ -394,7 +397,7 @@ def joined_while_held(facing: str, mounted: Node) -> Node:
         "flat": {"kind": "face", "at": 0 if facing == "-z" else 20, "facing": facing, "diameter": 60},
         "rim": {"kind": "cylinder", "diameter": 90, "from": 0, "to": 20},
     }
-    join: Node = {"outer": "collar.hole", "inner": "spindle.journal", "by": "shrink", "square": "bore", **mounted}
+    join: Node = {"outer": "collar.hole", "inner": "spindle.journal", "by": "press", "square": "bore", **mounted}
     join["stop"] = {"on": "collar.flat", "against": "spindle.shoulder"}
     return {
         "setupcheck": 1,

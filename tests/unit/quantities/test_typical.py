@@ -134,7 +134,7 @@ def test_a_head_set_by_a_readout_takes_its_typical_setting_and_says_so() -> None
     assert isinstance(allowed, Known) and {"readout tilt"} == allowed.rests_on
     assert 60.0 == pytest.approx(float(allowed.value) / SECOND)  # type: ignore[arg-type]
     assert {"readout tilt"} == rests(found, "TILT-001")
-    assert [(40, "warn")] == [(f.op, f.verdict) for f in found.evaluation.findings if f.rule == "TILT-009"]
+    assert [(40, "warn")] == [(f.op, f.verdict) for f in found.evaluation.findings if f.rule == "TILT-008"]
     assert "warn" == found.verdict
 
 
@@ -142,7 +142,7 @@ def test_a_head_set_nobody_knows_how_stays_open() -> None:
     found = reviewed(changed(WHEEL, ("uncertainty: 2', leans", "leans")))
     assert answer(found, "tilt.allowed", "40") == Open(("setups.40.head.uncertainty",))
     assert "open" == next(f.verdict for f in found.evaluation.findings if f.rule == "TILT-001")
-    assert [] == [f for f in found.evaluation.findings if f.rule == "TILT-009"]
+    assert [] == [f for f in found.evaluation.findings if f.rule == "TILT-008"]
 
 
 def test_a_hub_on_a_hot_plate_takes_the_plates_typical_error_and_says_so() -> None:
@@ -153,7 +153,7 @@ def test_a_hub_on_a_hot_plate_takes_the_plates_typical_error_and_says_so() -> No
     assert answer(found, "heat.planned_high", "70") == Known(hub + 30.0, frozenset({"hot-plate temperature error"}))
     assert {"hot-plate temperature error"} == rests(found, "HEAT-001") == rests(found, "HEAT-002")
     assert ["fail"] == [f.verdict for f in found.evaluation.findings if f.rule == "HEAT-002"]
-    assert ["warn"] == [f.verdict for f in found.evaluation.findings if f.rule == "HEAT-009"]
+    assert ["warn"] == [f.verdict for f in found.evaluation.findings if f.rule == "HEAT-005"]
 
 
 @pytest.mark.parametrize("by", ["by: flame, ", ""])
@@ -161,7 +161,7 @@ def test_a_heat_source_without_a_typical_error_stays_open(by: str) -> None:
     found = reviewed(changed(WHEEL, ("by: oven, oven_error: 10 degC, ", by)))
     assert answer(found, "heat.planned_low", "70") == Open(("setups.70.join.heat.oven_error",))
     assert {"open"} == {f.verdict for f in found.evaluation.findings if f.rule in ("HEAT-001", "HEAT-002")}
-    assert [] == [f for f in found.evaluation.findings if f.rule == "HEAT-009"]
+    assert [] == [f for f in found.evaluation.findings if f.rule == "HEAT-005"]
 
 
 def test_a_length_read_on_a_named_indicator_takes_its_typical_reading() -> None:

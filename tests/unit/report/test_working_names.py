@@ -63,8 +63,8 @@ def test_a_lower_limit_shows_the_lower_end_and_two_limits_show_both() -> None:
 
 
 def test_a_number_the_job_does_not_have_says_how_many_there_are() -> None:
-    assert "there is no require[99]. The job has require[1] to require[9]" == refused("require[99]")
-    assert "there is no require[0]. The job has require[1] to require[9]" == refused("require[0]")
+    assert "there is no require[99]. The job has require[1] to require[12]" == refused("require[99]")
+    assert "there is no require[0]. The job has require[1] to require[12]" == refused("require[0]")
 
 
 def test_a_figure_the_job_does_not_require_says_what_it_requires() -> None:
