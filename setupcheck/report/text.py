@@ -297,6 +297,7 @@ def _cautions(found: Review, everything: bool) -> Iterator[str]:
     told: set[str] = set()
     for op in ops:
         mine = [c for c in rest if c.op == op and (everything or c.id not in told)]
+        mine.sort(key=lambda c: bool(c.because))  # what is certain first, so that doubts never crowd it out
         fresh = mine[: None if everything else CAUTIONS_SHOWN]
         for caution in fresh:
             told.add(caution.id)

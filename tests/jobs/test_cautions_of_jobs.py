@@ -278,3 +278,8 @@ def test_a_caution_of_the_whole_job_comes_last_and_belongs_to_no_operation() -> 
     text = as_text(reviewed(WHEEL), everything=True)
     assert text.index("  op 70: If the hub stops") < text.index("  job: Worm and wheel draw fingers in")
     assert "op None" not in text
+
+
+def test_what_is_certain_is_printed_before_what_is_in_doubt() -> None:
+    text = flat(as_text(reviewed(changed(TURNED, LEADED, (", heat: {hub: 150 degC, by: oven}", "")))))
+    assert "If the hub stops half way" in text and "more, printed with --all:" in text
