@@ -97,7 +97,7 @@ def review(job: LoadedJob | str | Path, *, house: str | Path | None = None, on: 
         verdict(found.findings, found.cautions),
         results,
         tuple(gates(book.scopes, list(results.items()))),
-        _remedies(loaded, results),
+        _remedies(loaded, floor, results),
         on,
     )
 
@@ -108,13 +108,13 @@ def _house(path: Path, rulebook: RuleBook, book: Book) -> House:
     return load_house(path, rulebook, quantities=book.quantities)
 
 
-def _remedies(loaded: LoadedJob, results: Mapping[str, Result]) -> Mapping[str, Remedy]:
+def _remedies(loaded: LoadedJob, floor: Floor, results: Mapping[str, Result]) -> Mapping[str, Remedy]:
     """Remedies are looked for only where a stack is outside its limit."""
     if all(r.margin is None or r.margin >= 0.0 for r in results.values()):
         return {}
     from setupcheck.quantities.remedies import remedies
 
-    return remedies(loaded, results)
+    return remedies(loaded, floor, results)
 
 
 def prepare(loaded: LoadedJob) -> tuple[Floor, Book]:

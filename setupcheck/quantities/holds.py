@@ -164,21 +164,3 @@ def machine_error_stated(floor: Floor, setup: Setup) -> str | Open | None:
     if given is not None and (given.at_most is not None or given.measured is not None):
         return "stated"
     return "typical" if typical(machine.kind, "axis") is not None else Open((f"machines.{name}.axis_runout",))
-
-
-def nominal_gap(floor: Floor) -> float | Open | None:
-    """How far the drawn sizes alone leave the tooth mid-plane from the worm's axis [mm], without any error.
-
-    |z_teeth - (z_face + facing L)| with all shims at their middle sizes.  Source: arithmetic on the drawing.
-    """
-    job = floor.loaded.job
-    if job.place is None or job.place.worm_axis is None or job.mesh is None:
-        return None
-    teeth, face = floor.now(floor.loaded.ref(job.mesh.wheel)), floor.now(floor.loaded.ref(job.place.worm_axis.from_))
-    if teeth is None or face is None:
-        return Open(("mesh.wheel" if teeth is None else "place.worm_axis.from",), "it is never made in this route")
-    if floor.body(teeth.part) is not floor.body(face.part):
-        return Open(("setups",), f"{teeth.ref} and {face.ref} are never joined in this route")
-    length = job.place.worm_axis.length
-    middle = length.value + ((length.lower or 0.0) + (length.upper or 0.0)) / 2.0
-    return abs(teeth.z - face.z - face.facing * middle)

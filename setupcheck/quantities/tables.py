@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from setupcheck.quantities import holds, judged
+from setupcheck.quantities.advice import ADVICE
 from setupcheck.quantities.book import Quantity
 from setupcheck.quantities.cutter_shape import SHAPE
 from setupcheck.quantities.cutting import CUTTING
@@ -11,6 +12,7 @@ from setupcheck.quantities.head_setting import HEAD
 from setupcheck.quantities.joining import JOINING
 from setupcheck.quantities.joint_heat import HEAT
 from setupcheck.quantities.meshing import MESHING
+from setupcheck.quantities.placing import PLACE
 from setupcheck.quantities.strength import STRENGTH
 from setupcheck.quantities.tilting import TILT
 
@@ -236,18 +238,6 @@ ALLOW = (
     ),
 )
 
-PLACE = (
-    Quantity(
-        "place.nominal_gap",
-        "place",
-        "um",
-        1,
-        holds.nominal_gap,
-        {"floor": "route.floor"},
-        "how far the drawn sizes alone miss the worm's mid-plane",
-    ),
-)
-
 TABLES: tuple[Quantity, ...] = (
     *ROUTE,
     *STACK,
@@ -263,4 +253,5 @@ TABLES: tuple[Quantity, ...] = (
     *SHAPE,
     *MESHING,
     *PLACE,
+    *ADVICE,
 )

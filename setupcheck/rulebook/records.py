@@ -113,7 +113,10 @@ class Condition:
 
 @dataclass(frozen=True, slots=True)
 class Rule:
-    """One rule. It has no scope of its own: it runs once for every instance of its quantity."""
+    """One rule. It has no scope of its own: it runs once for every instance of its quantity.
+
+    remedy_from  a quantity of words that says what to do with this job's numbers; `remedy` where it has no value
+    """
 
     id: str
     family: str
@@ -133,6 +136,7 @@ class Rule:
     only_warn_if: Softening | None = None
     uncertainty: str = ""
     asks_for: str = ""
+    remedy_from: str = ""
     cautions: tuple[str, ...] = ()
 
     @property
