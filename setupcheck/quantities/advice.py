@@ -10,6 +10,7 @@ from setupcheck.physics.heating import planned_heat
 from setupcheck.quantities.book import Quantity
 from setupcheck.quantities.drive import WheelCut
 from setupcheck.quantities.friction import Friction
+from setupcheck.quantities.joining import heat_error
 from setupcheck.quantities.pairing import Pair
 from setupcheck.quantities.shop import Floor
 from setupcheck.quantities.strength import force_held
@@ -22,9 +23,10 @@ BEST = (1.4, 2.0)
 
 def oven(join: Join, needed: float, cap: float, loss: float) -> str | None:
     """Settings of the oven that meet the need and keep the cap, or that heat alone does not do it. Source: physics.heating."""
-    if join.heat is None or join.heat.oven_error is None:
+    error = heat_error(join.heat) if join.heat is not None else None
+    if error is None:
         return None
-    band = planned_heat(needed=needed, cap=cap, oven_error=join.heat.oven_error, carry_loss=loss)
+    band = planned_heat(needed=needed, cap=cap, oven_error=error[0], carry_loss=loss)
     low, high = math.ceil(band.low), math.floor(band.high)
     if low > high:
         return (

@@ -11,7 +11,7 @@ from setupcheck.ledger.account import Account, face_reading_to_lean, fim_to_ecce
 from setupcheck.ledger.causes import Cause, Law
 from setupcheck.ledger.route import part_vector
 from setupcheck.notation import NotationError, angle, show
-from setupcheck.quantities.typical import typical
+from setupcheck.quantities.typical import typical, typical_length
 from setupcheck.record import record
 
 
@@ -132,7 +132,10 @@ def face_lean(
 
 
 def length_error(given: Deviation | None, entry: Entry) -> Account:
-    """A length error: a bound is rectangular, a measured one its value with a Gaussian around it."""
+    """A length error: a bound is rectangular, a measured one its value with a Gaussian around it.
+
+    A device alone takes its typical reading, touch or position, rectangular as well.
+    """
     if given is None:
         return Account.of(entry.missing())
     if given.measured is not None:
@@ -148,7 +151,12 @@ def length_error(given: Deviation | None, entry: Entry) -> Account:
     elif given.at_most is not None:
         cause = Cause(entry.name, "length", entry.op, high=given.at_most, paths=(entry.path,))
     else:
-        return Account.of(replace(entry.missing(), missing=f"{entry.path}.at_most"))
+        row = typical_length(given.device or entry.device)
+        if row is None:
+            return Account.of(replace(entry.missing(), missing=f"{entry.path}.at_most"))
+        cause = Cause(
+            entry.name, "length", entry.op, high=row.value, mode="typical", paths=(entry.path,), rests_on=row.name
+        )
     return Account.of(cause)
 
 

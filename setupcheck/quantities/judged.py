@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from setupcheck.ledger.combine import Combined, Draws, combine
 from setupcheck.ledger.figures import Figure
-from setupcheck.quantities.book import Open
+from setupcheck.quantities.book import Known, Open
 from setupcheck.quantities.relations import Built
 from setupcheck.quantities.requirements import Stack
 from setupcheck.quantities.scopes import CutEntry
@@ -67,12 +67,22 @@ def requirements(floor: Floor) -> float | None:
     return float(len(job.require)) if toothed or joined else None
 
 
-def built(floor: Floor, stack: Stack) -> Built | Open:
+def _known(built: Built | Open) -> Known | Open:
+    """A figure with the typical values that the causes behind it were made with."""
+    if isinstance(built, Open):
+        return built
+    causes = [push.cause for push in built.figure.pushes()]
+    return Known(
+        built, frozenset(c.rests_on for one in causes for c in (one.of.origins() if one.of else (one,))) - {""}
+    )
+
+
+def built(floor: Floor, stack: Stack) -> Known | Open:
     """The figure a requirement asks for, from the accounts of both surfaces; open with what is missing.
 
     relation of G about R = account of G - account of R at the same height.  Source: derived here (design of the ledger).
     """
-    return build(floor, stack)
+    return _known(build(floor, stack))
 
 
 def combined(built: Built, stack: Stack, floor: Floor, draws: Draws) -> Result:
@@ -140,12 +150,12 @@ def second_order(built: Built, stack: Stack) -> float | None:
     return built.second_order / scale
 
 
-def stock_built(floor: Floor, key: str) -> Built | Open | None:
+def stock_built(floor: Floor, key: str) -> Known | Open | None:
     """Stock a cut meets: half the difference of diameters (or the axial distance of faces) less the offset of old and new.
 
     leave/2 - e - |t| lever.  Source: geometry, derived here.
     """
-    return stock_left(floor, key) if key in floor.stock else None
+    return _known(stock_left(floor, key)) if key in floor.stock else None
 
 
 def least_stock(built: Built, entry: CutEntry) -> float:

@@ -9,7 +9,7 @@ from setupcheck.physics import interference as fits
 from setupcheck.physics.heating import interference_at
 from setupcheck.physics.materials import Material, Question, expansion_for, modulus_for
 from setupcheck.quantities.book import Open, OutOfRange
-from setupcheck.quantities.facts import material_family
+from setupcheck.quantities.contents import material_family
 from setupcheck.quantities.friction import Friction, friction
 from setupcheck.quantities.joining import JointSizes
 from setupcheck.quantities.joint_shape import Section, sections

@@ -185,6 +185,15 @@ HOLD = (
         "farthest end of the cut from the nearer centring plane, over the distance of the planes",
     ),
     Quantity(
+        "hold.overhang",
+        "hold",
+        "1",
+        1,
+        holds.overhang,
+        {"floor": "route.floor", "key": "@key", "entry": ":"},
+        "how far the part stands out from where it is held, in its diameters",
+    ),
+    Quantity(
         "machine.error_stated",
         "setup",
         "",

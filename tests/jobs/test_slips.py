@@ -229,7 +229,22 @@ SLIPS: dict[tuple[str, str], tuple[Slip, ...]] = {
             "by: indicator, runout: {at_most: 0.2 thou, indicator: 0.5 thou}}",
         ),
     ),
-    ("DIVIDE-003", "nothing said of the dividing device"): (
+    ("DIVIDE-003", "a way of dividing without a typical error, and none stated"): (
+        Slip(
+            WHEEL,
+            40,
+            'by: hole-circle, circle: 18, wheel: {once_per_turn: ±10"}, worm: {once_per_crank: ±4"}, setting: 2"}',
+            "by: x-y}",
+        ),
+        Slip(
+            PLATE,
+            30,
+            'divide: {by: rotary-table, wheel: {once_per_turn: ±8"}, worm: {once_per_crank: ±2"}, setting: 2", '
+            'clamp: 1"}',
+            "divide: {by: x-y}",
+        ),
+    ),
+    ("DIVIDE-004", "nothing said of the dividing device but its kind"): (
         Slip(WHEEL, 40, 'wheel: {once_per_turn: ±10"}, worm: {once_per_crank: ±4"}, setting: 2"}', "}"),
         Slip(
             PLATE,
@@ -418,7 +433,7 @@ def test_a_joint_that_will_not_go_on_or_not_hold_is_caught(good: str, bad: str, 
     ("gone", "instead", "key"),
     [
         ("hub: 175 degC, ", "", "setups.70.join.heat.hub"),
-        (" oven_error: 10 degC,", "", "setups.70.join.heat.oven_error"),
+        (" by: oven, oven_error: 10 degC,", "", "setups.70.join.heat.oven_error"),
         ("material: CuSn12-C\n", "\n", "parts.wheel.material"),
         ("material: CuSn12-C\n", "material: unobtainium\n", "parts.wheel.material"),
         ("diameter: 32 H5,", "diameter: 32,", "parts.wheel.surfaces.bore.diameter"),
