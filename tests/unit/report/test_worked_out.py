@@ -48,7 +48,7 @@ def test_blocks_and_shifts_are_said_where_a_bar_or_a_pivot_is_used() -> None:
     pivoted = changed(
         WHEEL, ("{found: after-tilt, error: 15 um}", "{found: before-tilt, pivot: 120 ±0.2, error: 15 um}")
     )
-    assert "tilting carries the wheel's middle 7.485 mm up or down and 0.234 mm back" in lines(pivoted)
+    assert "tilting carries the wheel's middle 7.486 mm up or down and 0.234 mm back" in lines(pivoted)
 
 
 def test_the_shim_is_said_where_the_drawn_sizes_miss() -> None:
