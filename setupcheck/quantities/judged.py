@@ -2,11 +2,13 @@
 
 from __future__ import annotations
 
+from collections.abc import Iterable
 from dataclasses import dataclass
 
+from setupcheck.ledger.causes import Cause
 from setupcheck.ledger.combine import Combined, Draws, combine
 from setupcheck.ledger.figures import Figure
-from setupcheck.quantities.book import Open
+from setupcheck.quantities.book import Known, Open
 from setupcheck.quantities.relations import Built
 from setupcheck.quantities.requirements import Stack
 from setupcheck.quantities.scopes import CutEntry
@@ -76,14 +78,20 @@ def built(floor: Floor, stack: Stack) -> Built | Open:
     return build(floor, stack)
 
 
-def combined(built: Built, stack: Stack, floor: Floor, draws: Draws) -> Result:
+def combined(built: Built, stack: Stack, floor: Floor, draws: Draws) -> Known:
     """Worst case |sum of known vectors| + sum |coefficient| bound; rss; likely value and chance by Monte Carlo.
+
+    The typical values among its causes go with it, so that every finding on it tells what it rests on.
 
     Source: worst case and rss common practice; Monte Carlo JCGM 101:2008.
     """
     job = floor.loaded.job
     found = combine(built.figure, draws, low=stack.low, high=stack.high, confidence=job.confidence)
-    return Result(stack, found, built.figure)
+    return Known(Result(stack, found, built.figure), _typical(s.cause for s in found.shares if s.worst > 0.0))
+
+
+def _typical(causes: Iterable[Cause]) -> frozenset[str]:
+    return frozenset(cause.rests_on for cause in causes if cause.rests_on)
 
 
 def worst(result: Result) -> float | None:
@@ -149,9 +157,11 @@ def stock_built(floor: Floor, key: str) -> Built | Open | None:
     return stock_left(floor, key) if key in floor.stock else None
 
 
-def least_stock(built: Built, entry: CutEntry) -> float:
+def least_stock(built: Built, entry: CutEntry) -> Known:
     """Worst-case stock at the thinnest place, form error of the old surface taken off. Source: geometry, derived here."""
-    return built.figure.base() - sum(p.down for p in built.figure.pushes()) - (entry.cut.form or 0.0)
+    pushes = built.figure.pushes()
+    least = built.figure.base() - sum(p.down for p in pushes) - (entry.cut.form or 0.0)
+    return Known(least, _typical(p.cause for p in pushes if p.down > 0.0))
 
 
 def finishing_cut(entry: CutEntry) -> float:
