@@ -169,7 +169,7 @@ def _growth(floor: Floor, found: Drive) -> Account | Open:
         join = setup.join
         if join is None or floor.loaded.ref(join.outer).part != found.wheel.part or join.by not in pairing.FITTED:
             continue
-        if not strength.teeth_before(floor, found.wheel.part, setup.op):
+        if not strength.teeth_before(floor, found.wheel.part, setup.op, surface=found.wheel.surface):
             continue
         grown = growth(floor, join, setup.op)
         if isinstance(grown, Open):

@@ -28,6 +28,9 @@ def ring_of(pair: Pair) -> Ring:
 
     Source: lumped capacity; emissivity of dull metal, which loses more (physics.heating).
     """
+    thinnest = min(s.outside for s in pair.sections)
+    if thinnest <= pair.diameter:  # its volume would be negative, and the mean below would hide it
+        raise OutOfRange(f"an outside of {thinnest:g} mm is no hub on a joint of {pair.diameter:g} mm")
     length = math.fsum(s.length for s in pair.sections)
     squares = math.fsum(s.length * s.outside**2 for s in pair.sections) / length
     try:

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import math
 
+from setupcheck.jobfile.names import Ref
 from setupcheck.jobfile.setups import Join
 from setupcheck.physics import interference as fits
 from setupcheck.physics.heating import holding_temperature, loosening_temperature
@@ -211,15 +212,22 @@ def growth_uncounted(floor: Floor, growth: float, join: Join, op: int) -> float 
     return None if not teeth_before(floor, part, op) else 0.0 if asked else growth
 
 
-def teeth_before(floor: Floor, part: str, op: int) -> bool:
-    """Whether teeth of a part are there when operation `op` joins it, and not cut again afterwards."""
+def teeth_before(floor: Floor, part: str, op: int, *, surface: str | None = None) -> bool:
+    """Whether teeth of a part (all of them, or one surface) are finished when operation `op` joins it.
+
+    Teeth that no setup cuts are finished if the part has them as bought; teeth that are cut again afterwards are not.
+    """
     last: dict[str, int] = {}
     for setup in floor.loaded.job.setups:
         for key in setup.cut:
             ref = floor.loaded.ref(key, setup.part)
-            if ref.part == part and floor.loaded.job.parts[part].surfaces[ref.surface].kind == "teeth":
+            if ref.part == part:
                 last[ref.surface] = setup.op
-    return bool(last) and all(made < op for made in last.values())
+    return any(
+        last[name] < op if name in last else floor.now(Ref(part, name)) is not None
+        for name, node in floor.loaded.job.parts[part].surfaces.items()
+        if node.kind == "teeth" and surface in (None, name)
+    )
 
 
 _HERE = {"floor": "route.floor", "join": ":"}

@@ -2,12 +2,15 @@
 
 A wheel of 40 teeth steps 10 gon (a full circle is 400 gon). One turn of the crank of a 40 : 1 head is 9 degrees.
 60 teeth on 40 : 1 take 2/3 of a turn: 12 holes on the circle of 18. 1.5 minutes of arc are under 30 um on a workpiece of
-130 mm (28.4 um at its rim). 1" at a radius of 100 mm is 0.485 um.
+130 mm (28.4 um at its rim). 1" at a radius of 100 mm is 0.485 um. A small bronze wheel goes on its spindle with some 15 um,
+hot; warmth loosens bronze on steel; teeth cut before fitting grow with the hub and eat backlash. Soft shims nobody measured
+cost some 100 um of run-out; what a scroll chuck shows holds for the diameter it was read on.
 """
 
 from __future__ import annotations
 
 import math
+from dataclasses import replace
 from fractions import Fraction
 
 import pytest
@@ -15,8 +18,11 @@ import pytest
 from setupcheck.division.methods import circles_that_fit, holes_left_over, turns_per_place
 from setupcheck.notation import angle
 from setupcheck.quantities.book import Known
+from setupcheck.quantities.typical import typical
+from setupcheck.shipped import shipped
 
 from .bench import ARCSEC, UM, findings, reviewed, stack
+from .joint_jobs import FitJob, Metal
 from .test_folded_harmonics import indexed
 
 COMMON_PLATES = (15, 16, 17, 18, 19, 20, 21, 23, 27, 29, 31, 33, 37, 39, 41, 43, 47, 49)
@@ -93,3 +99,168 @@ def test_eccentricity_is_half_of_the_run_out() -> None:
     assert 412.5 == pytest.approx(2.0 * UM / ARCSEC, abs=0.1)
     assert 206_264.8 == pytest.approx(1.0 / ARCSEC, abs=0.05)
     assert math.tau == pytest.approx(1_296_000 * ARCSEC)
+
+
+# -- holding ---------------------------------------------------------------------------------------------------------
+
+
+def rechucked(by: str, runout: str) -> str:
+    """A disc bored in a chuck that grips its finished rim (invented part)."""
+    return f"""
+setupcheck: 1
+title: A disc bored again
+units: mm
+machines: {{lathe-A: {{kind: lathe, axis_runout: 0 um}}}}
+parts:
+  disc:
+    surfaces:
+      rim:  {{kind: cylinder, diameter: 100, from: 0, to: 20, made: stock}}
+      face: {{kind: face, at: 0, facing: -z, diameter: 100, made: stock}}
+      bore: {{kind: bore, diameter: 32, from: 0, to: 20}}
+setups:
+  - op: 10
+    machine: lathe-A
+    looks_at_tool: +z
+    hold:
+      centre: {{on: rim, by: {by}, at: 10, runout: {runout}}}
+      square: {{on: face, by: parallels, face_runout: 0 um, across: 90}}
+    cut: {{bore: {{}}}}
+require:
+  - {{what: run-out, of: disc.bore, about: disc.rim, at: 10, at_most: 200 um}}
+"""
+
+
+def offset_over_shims(shims: tuple[float, float, float]) -> float:
+    """How far the middle of a disc stands from that of a scroll chuck over three shims: jaws close alike, so each point of
+    contact moves by what its shim is over the mean, and the middle by 2/3 of the sum of these, taken as vectors."""
+    return (
+        2.0
+        / 3.0
+        * abs(sum(t * complex(math.cos(k * math.tau / 3), math.sin(k * math.tau / 3)) for k, t in enumerate(shims)))
+    )
+
+
+def test_shims_that_nobody_measured_leave_some_100_um_of_run_out() -> None:
+    """One shim thicker by t moves the middle by 2t/3, so 75 um of spread, a crease in a strip of 0.1 mm, show 100 um."""
+    assert 0.100 == pytest.approx(2.0 * offset_over_shims((0.175, 0.100, 0.100)))
+    assert 0.0067 == pytest.approx(2.0 * offset_over_shims((0.105, 0.100, 0.100)), abs=1e-4)  # strips from one can
+    assert 0.0 == pytest.approx(offset_over_shims((0.1, 0.1, 0.1)), abs=1e-12)
+    job = rechucked("shimmed-jaws", "{device: shimmed-jaws}")
+    assert 100.0 == pytest.approx(stack(job).combined.worst.high / UM, abs=0.5)
+    (found,) = findings(job, "STACK-001")
+    assert ("shimmed-jaws runout",) == found.rests_on
+    # measured shims are their own knowledge and rest on nothing typical
+    measured = rechucked("shimmed-jaws", "7 um")
+    assert 7.0 == pytest.approx(stack(measured).combined.worst.high / UM, abs=0.05)
+    assert [()] == [tuple(f.rests_on) for f in findings(measured, "STACK-001")]
+
+
+def test_the_run_out_of_a_scroll_chuck_is_typical_only_and_of_one_diameter() -> None:
+    """One and the same chuck was read 10, 20 and 50 um at 19, 12.7 and 25 mm: no figure of a chuck goes to another size."""
+    row = typical("three-jaw", "runout")
+    assert row is not None
+    assert "one diameter only" in row.note
+    assert row.value >= 0.050
+    (found,) = findings(rechucked("three-jaw", "{device: three-jaw}"), "STACK-001")
+    assert ("three-jaw runout",) == found.rests_on
+
+
+# -- joining ---------------------------------------------------------------------------------------------------------
+
+HEATED = "joint: degreased, heat: {hub: 140 degC, by: oven, oven_error: 10 degC, carry: 10 s}"
+
+
+def small_wheel(interference_um: float, *, served: str = "[20 degC, 20 degC]") -> str:
+    """The shipped worm wheel of 72 teeth with its joint as measured and nothing else changed."""
+    text = shipped("jobs/rotator-worm-wheel.yaml").read_text(encoding="utf-8")
+    for old, new in (
+        ("diameter: 32 H5", "diameter: {measured: 32.000, uncertainty: 0 um}"),
+        ("diameter: 32.030 ±0.003", f"diameter: {{measured: {32.0 + interference_um / 1000.0!r}, uncertainty: 0 um}}"),
+        ("serves_at: [5 degC, 45 degC]", f"serves_at: {served}"),
+    ):
+        assert text.count(old) == 1, old
+        text = text.replace(old, new)
+    return text
+
+
+def of_joint(text: str, name: str) -> float:
+    book = reviewed(text).book
+    found = book.get(name, book.instances("join")[0])
+    assert isinstance(found, Known), found
+    assert isinstance(found.value, float)
+    return found.value
+
+
+def test_a_small_wheel_goes_on_its_spindle_hot_with_some_15_um() -> None:
+    """A bronze wheel on 32 mm: 15 um hold a usual torque cold, the hub goes over at 100 to 130 degC, an oven's work."""
+    wheel = small_wheel(15.0)
+    assert 100.0 < of_joint(wheel, "heat.needed") < 115.0
+    assert of_joint(wheel, "heat.needed") + 15.0 < 130.0  # with the usual reserve
+    assert of_joint(wheel, "fit.torque_held") > 40e3  # N mm
+    assert of_joint(wheel, "fit.grip_most") < of_joint(wheel, "fit.elastic")
+    # twice as much still stays elastic, and asks some 30 K more
+    assert 15.0 / (17e-3 * 32.0) == pytest.approx(
+        of_joint(small_wheel(30.0), "heat.needed") - of_joint(wheel, "heat.needed")
+    )
+
+
+def test_a_small_wheel_holds_less_warm_and_nothing_at_all_at_some_heat() -> None:
+    cold, warm = (small_wheel(15.0, served=f"[20 degC, {t} degC]") for t in (20, 45))
+    assert of_joint(warm, "fit.torque_held") < 0.6 * of_joint(cold, "fit.torque_held")
+    assert 20.0 < of_joint(cold, "fit.holds_to") < of_joint(cold, "fit.loosens_at") < 80.0
+
+
+def test_H7_r6_of_bronze_on_steel_can_be_loose_at_33_degC() -> None:
+    """100 H7/r6, Rz 6.3 and 4: 16 um less 8.24 are gone 12 K up with the usual expansions, 10 K up with the safe ends."""
+    usual = FitJob(
+        diameter=100,
+        outside=140,
+        bore="100 H7",
+        journal="100 r6",
+        hub=Metal(gpa=103.4, poisson=0.34, expansion=18.4),
+        shaft=Metal(gpa=206, poisson=0.29, expansion=12.0),
+        by="shrink",
+        extra=f"friction: 0.17, {HEATED}",
+    ).text()
+    assert 32.1 == pytest.approx(of_joint(usual, "fit.loosens_at"), abs=0.1)
+    listed = usual
+    for metal, name in (("modulus: 103.4 GPa", "CuSn12-C"), ("modulus: 206 GPa", "42CrMo4")):
+        line = next(each for each in listed.splitlines() if metal in each)
+        listed = listed.replace(line, f"    material: {name}")
+    assert 29.0 < of_joint(listed, "fit.loosens_at") < 33.0
+
+
+@pytest.mark.parametrize(("interference", "growth", "eaten"), [(30, 16, 6), (45, 25, 9), (60, 33, 12)])
+def test_teeth_cut_before_pressing_grow_and_eat_backlash(interference: int, growth: int, eaten: int) -> None:
+    """Shop figures for a bore of 60, bronze on a solid steel centre. They do not state the ring; the 34 MPa and 55 MPa of
+    hoop stress told for 45 um are those of a ring of some 122 mm at the roots, which is assumed here: rough, to 5 %."""
+    job = FitJob(
+        diameter=60,
+        outside=122,
+        interference=interference / 1000.0,
+        length=24,
+        hub=Metal(gpa=103.4, poisson=0.34, expansion=18.0),
+        shaft=Metal(gpa=206, poisson=0.29, expansion=12.0),
+        toothed=True,
+    )
+    assert growth == pytest.approx(job.get("fit.growth_most") / UM, rel=0.05)
+    assert eaten == pytest.approx(job.get("fit.growth_most") * math.tan(angle("20 deg")) / UM, rel=0.05)
+    if interference == 45:
+        assert 34 == pytest.approx(job.get("fit.pressure_most"), rel=0.05)
+        assert 55 == pytest.approx(job.get("fit.hoop"), rel=0.05)
+        # 23 kN at mu = 0.15; 40 K warm it loses 14 um
+        hard = replace(job, extra="friction: 0.15, smoothing: 0.0")
+        assert 23e3 == pytest.approx(hard.get("fit.press_force"), rel=0.05)
+        warm = replace(job, serves_at="[20 degC, 60 degC]")
+        assert 14 == pytest.approx((job.get("fit.grip_least") - warm.get("fit.grip_least")) / UM, abs=0.5)
+
+
+def test_the_backlash_of_the_shipped_wheel_loses_what_its_teeth_grow_times_tan_alpha() -> None:
+    less, more = small_wheel(20.0), small_wheel(32.0)
+    index = next(i for i, s in enumerate(reviewed(less).book.instances("stack")) if s.key.startswith("backlash."))
+    a, b = (stack(each, index).combined.worst for each in (less, more))
+    slope = math.tan(angle("20 deg"))
+    most, least = (of_joint(more, n) - of_joint(less, n) for n in ("fit.growth_most", "fit.growth_least"))
+    assert most > 1.0 * UM
+    assert most * slope == pytest.approx(a.low - b.low)
+    assert least * slope == pytest.approx(a.high - b.high)
