@@ -106,7 +106,7 @@ def _along(floor: Floor, stack: Stack, found: Drive) -> float:
 def gap_of_insert(floor: Floor, cut: WheelCut, width: float) -> float:
     """Gap of the wheel at its rolling circle that an insert of this width cuts [mm], by halving the error of the width.
 
-    Raises: OutOfRange for sizes that give no insert.  Source: worm.cutter.insert_widths turned round.
+    Raises: OutOfRange for sizes that give no insert.  Source: worm.insert.insert_widths turned round.
     """
     height = cut.cutter.width_at if cut.cutter.width_at is not None else cut.pitch_height
     tilt = tilt_of(floor, cut)

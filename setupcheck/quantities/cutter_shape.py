@@ -11,7 +11,9 @@ from setupcheck.quantities.scopes import CutEntry
 from setupcheck.quantities.shop import Floor
 from setupcheck.record import record
 from setupcheck.worm import cutter as fly
+from setupcheck.worm.depth import early_touch as touched_early
 from setupcheck.worm.geometry import fewest_teeth
+from setupcheck.worm.insert import insert_widening, insert_widths
 
 USUAL_FILM = 0.006
 """Thickness of marking blue that a contact share is told for where no requirement says one [mm]. Common practice, 5 to 7 um."""
@@ -170,25 +172,25 @@ def insert(cut: WheelCut) -> str | Open:
 def insert_gap(shape: Shape, insert: str) -> float | None:
     """What an insert copied from the mid-plane is too narrow by one module from pitch height, each side [mm].
 
-    (B m)^2/(4 A) cos g; 0 for an envelope; None without crowning.  Source: worm.cutter, order of size.
+    (B m)^2/(4 A) cos g; 0 for an envelope; None without crowning.  Source: worm.insert, order of size.
     """
     if insert == "envelope":
         return 0.0
     if shape.crowning <= 0.0:
         return None
     d = shape.cut.drive
-    return fly.insert_widening(d.module, crowning=shape.crowning, twist=shape.twist, lead_angle=d.lead_angle)
+    return insert_widening(d.module, crowning=shape.crowning, twist=shape.twist, lead_angle=d.lead_angle)
 
 
 def width_needed(cut: WheelCut, floor: Floor) -> float:
-    """Width of the insert at pitch height that just fits the thread as measured, no backlash [mm]. Source: worm.cutter."""
+    """Width of the insert at pitch height that just fits the thread as measured, no backlash [mm]. Source: worm.insert."""
     return insert_width(cut, cut.drive.thread, height=cut.pitch_height, tilt=tilt_of(floor, cut))
 
 
 def tip_width(cut: WheelCut, floor: Floor) -> float:
     """Width of the insert at its tip that just fits the thread as measured, no backlash [mm]; an envelope is a little wider.
 
-    Source: worm.cutter, mid-plane section.
+    Source: worm.insert, mid-plane section.
     """
     return insert_width(cut, cut.drive.thread, height=0.0, tilt=tilt_of(floor, cut))
 
@@ -202,11 +204,11 @@ def tilt_of(floor: Floor, cut: WheelCut) -> float:
 def insert_width(cut: WheelCut, gap_arc: float, *, height: float, tilt: float) -> float:
     """Width of a mid-plane insert at a height above its tip for a gap at the rolling circle [mm].
 
-    Raises: OutOfRange for sizes that give no insert.  Source: worm.cutter.
+    Raises: OutOfRange for sizes that give no insert.  Source: worm.insert.
     """
     d = cut.drive
     try:
-        return fly.insert_widths(
+        return insert_widths(
             [height],
             axial_module=d.module,
             wheel_teeth=d.teeth,
@@ -225,7 +227,7 @@ def insert_width(cut: WheelCut, gap_arc: float, *, height: float, tilt: float) -
 def early_touch(cut: WheelCut, floor: Floor) -> float | Open | None:
     """How much earlier a turning cutter meets the corners of the throat than its bottom [mm]; 0 for a standing one.
 
-    None where the depth is not counted from a throat. Taken as turning where nothing is said.  Source: worm.cutter.
+    None where the depth is not counted from a throat. Taken as turning where nothing is said.  Source: worm.depth.
     """
     assert cut.cut.depth_from is not None
     part = cut.drive.wheel.part
@@ -249,7 +251,7 @@ def early_touch(cut: WheelCut, floor: Floor) -> float | Open | None:
     height = (max(rims) - node.diameter) / 2.0
     half = math.sqrt(max(node.radius**2 - (node.radius - height) ** 2, 0.0))
     try:
-        return fly.early_touch(throat_radius=node.radius, cutter_radius=cut.radius, throat_width=2.0 * half)
+        return touched_early(throat_radius=node.radius, cutter_radius=cut.radius, throat_width=2.0 * half)
     except ValueError as why:
         raise OutOfRange(str(why)) from None
 

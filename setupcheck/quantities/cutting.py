@@ -11,7 +11,7 @@ def passes_left(entry: CutEntry, path: str) -> float | Open | None:
 
     depth - sum of the passes.  Source: arithmetic.
     """
-    from setupcheck.worm.cutter import left_by_passes
+    from setupcheck.worm.depth import left_by_passes
 
     if not entry.cut.passes:
         return None

@@ -11,7 +11,7 @@ from dataclasses import dataclass
 
 import pytest
 
-from setupcheck.worm import cutter, geometry, tilt
+from setupcheck.worm import cutter, geometry, insert, tilt
 
 FILM = 0.006
 
@@ -63,7 +63,7 @@ class Case:
         )
 
     def widths(self, radius: float, heights: list[float], thinner: float = 0.0) -> tuple[float, ...]:
-        return cutter.insert_widths(
+        return insert.insert_widths(
             heights,
             axial_module=self.module,
             wheel_teeth=self.teeth,
@@ -221,9 +221,9 @@ def test_the_practice_example_of_a_60_tooth_wheel() -> None:
     stacks = [tilt.sine_bar_stack(lead_angle + math.radians(k / 60.0), bar=100.0) for k in (0, 1)]
     assert 0.029 == pytest.approx(stacks[1] - stacks[0], abs=1e-4)
     throat = geometry.wheel_sizes(axial_module=2.0, reference_diameter=28.0, wheel_teeth=60, clearance_factor=0.25)
-    for touched, depth in ((throat.throat_diameter, 4.5), (127.0, 6.0)):
-        fed = cutter.depth_to_feed(touched_diameter=touched, root_diameter=throat.root_diameter)
-        assert depth == pytest.approx(fed)
+    for touched, wanted in ((throat.throat_diameter, 4.5), (127.0, 6.0)):
+        fed = depth.depth_to_feed(touched_diameter=touched, root_diameter=throat.root_diameter)
+        assert wanted == pytest.approx(fed)
 
 
 def test_a_pivot_120_mm_away() -> None:

@@ -12,7 +12,7 @@ import math
 import pytest
 from scipy.optimize import brentq, minimize, minimize_scalar
 
-from setupcheck.worm import geometry
+from setupcheck.worm import geometry, wires
 
 HANDBOOK = [
     # lead angle deg, starts, wire, M - E, as printed [in]
@@ -34,8 +34,8 @@ WORMS = [
 ]
 
 
-def over(starts: int, module: float, diameter: float, alpha_deg: float, wire: float) -> geometry.OverWires:
-    return geometry.over_wires(
+def over(starts: int, module: float, diameter: float, alpha_deg: float, wire: float) -> wires.OverWires:
+    return wires.over_wires(
         starts=starts,
         axial_module=module,
         reference_diameter=diameter,
@@ -81,7 +81,7 @@ def test_the_handbooks_wires_for_worm_threads(lead_deg: int, starts: int, wire: 
 def test_the_handbooks_wires_touch_at_the_pitch_diameter(row: tuple[int, int, float, float]) -> None:
     lead_deg, starts, wire, _ = row
     diameter = starts / (math.pi * math.tan(math.radians(lead_deg)))
-    ours = geometry.best_wire(
+    ours = wires.best_wire(
         starts=starts,
         axial_module=1.0 / math.pi,
         reference_diameter=diameter,
@@ -114,7 +114,7 @@ def test_a_thinner_thread_lowers_the_size_over_wires() -> None:
     # 2.741 per mm of axial thickness (computed before), simple cot alpha = 2.7475
     thick, wire, alpha = math.pi * 1.25, 4.16, math.radians(20.0)
     sizes = [
-        geometry.over_wires(
+        wires.over_wires(
             starts=1,
             axial_module=2.5,
             reference_diameter=30.0,

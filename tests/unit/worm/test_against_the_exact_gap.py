@@ -8,7 +8,7 @@ from dataclasses import replace
 import pytest
 from scipy.optimize import brentq
 
-from setupcheck.worm import cutter, geometry, tilt
+from setupcheck.worm import cutter, geometry, insert, tilt
 
 from .exact_gap import Pair
 
@@ -38,7 +38,7 @@ def pair_of(p: Pair) -> dict[str, float]:
 
 
 def gap(p: Pair) -> float:
-    return cutter.gap_arc(
+    return insert.gap_arc(
         thread_thickness=math.pi * p.module / 2.0,
         backlash=0.0,
         axial_module=p.module,
@@ -80,7 +80,7 @@ def test_the_gap_of_the_thread_as_measured(p: Pair) -> None:
 def test_the_insert_above_the_start_of_the_involute(p: Pair) -> None:
     at = replace(p, tilt=math.atan(p.starts * p.module / p.worm_diameter))
     heights = [k * p.module for k in (1.0, 1.2, 2.0)]
-    ours = cutter.insert_widths(
+    ours = insert.insert_widths(
         heights,
         axial_module=p.module,
         wheel_teeth=p.teeth,

@@ -8,7 +8,7 @@ import pytest
 from hypothesis import given
 from hypothesis import strategies as st
 
-from setupcheck.worm import cutter, geometry
+from setupcheck.worm import cutter, depth, geometry, insert, wires
 
 WORM = {"starts": 1, "axial_module": 2.5, "reference_diameter": 30.0, "pressure_angle": math.radians(20.0)}
 
@@ -16,8 +16,8 @@ WORM = {"starts": 1, "axial_module": 2.5, "reference_diameter": 30.0, "pressure_
 @given(st.floats(3.0, 4.8), st.floats(4.0, 4.4), st.integers(1, 3))
 def test_the_thickness_comes_back_from_the_size_over_wires(thickness: float, wire: float, starts: int) -> None:
     worm = {**WORM, "starts": starts}
-    size = geometry.over_wires(thread_thickness=thickness, wire=wire, **worm).size  # type: ignore[arg-type]
-    back = geometry.thickness_over_wires(size=size, wire=wire, **worm)  # type: ignore[arg-type]
+    size = wires.over_wires(thread_thickness=thickness, wire=wire, **worm).size  # type: ignore[arg-type]
+    back = wires.thickness_over_wires(size=size, wire=wire, **worm)  # type: ignore[arg-type]
     assert thickness == pytest.approx(back, abs=1e-9)
 
 
@@ -63,12 +63,12 @@ def test_the_pressure_angles_turn_into_each_other() -> None:
 def test_wires_that_do_not_fit_are_refused(change: dict[str, float], says: str) -> None:
     given_sizes = {**WORM, "thread_thickness": math.pi * 1.25, **change}
     with pytest.raises(ValueError, match=says):
-        geometry.over_wires(**given_sizes)  # type: ignore[arg-type]
+        wires.over_wires(**given_sizes)  # type: ignore[arg-type]
 
 
 def test_a_size_over_wires_of_another_pitch_is_refused() -> None:
     with pytest.raises(ValueError, match="fits no thread of"):
-        geometry.thickness_over_wires(size=52.0, wire=4.16, **WORM)  # type: ignore[arg-type]
+        wires.thickness_over_wires(size=52.0, wire=4.16, **WORM)  # type: ignore[arg-type]
 
 
 def test_edge_contact_has_no_contact_share() -> None:
@@ -80,7 +80,7 @@ def test_edge_contact_has_no_contact_share() -> None:
 
 def test_an_undercut_wheel_has_no_insert() -> None:
     with pytest.raises(ValueError, match=r"29\.9 teeth are needed"):
-        cutter.insert_widths(
+        insert.insert_widths(
             [0.0],
             axial_module=2.5,
             wheel_teeth=28,
@@ -117,9 +117,9 @@ def test_a_turning_cutter_touches_the_corners_of_a_throat_first(throat: float, r
     # brute force: lowest cutter centre that keeps its circle outside the hollow, against its height over the bottom
     zs = [width / 2.0 * k / 2000.0 for k in range(2001)]
     centre = max(throat - math.sqrt(throat**2 - z * z) + math.sqrt(radius**2 - z * z) for z in zs)
-    early = cutter.early_touch(throat_radius=throat, cutter_radius=radius, throat_width=width)
+    early = depth.early_touch(throat_radius=throat, cutter_radius=radius, throat_width=width)
     assert centre - radius == pytest.approx(early, abs=1e-9)
-    assert 0.0 == cutter.early_touch(throat_radius=throat, cutter_radius=throat - 1.0, throat_width=width)
+    assert 0.0 == depth.early_touch(throat_radius=throat, cutter_radius=throat - 1.0, throat_width=width)
 
 
 @pytest.mark.parametrize(
@@ -127,14 +127,14 @@ def test_a_turning_cutter_touches_the_corners_of_a_throat_first(throat: float, r
     [([2.0, 1.0, 0.3], 0.0, True), ([2.0, 1.0, 0.2], 0.1, False), ([2.0, 1.0, 0.305], -0.005, True)],
 )
 def test_passes_add_up_to_the_depth(passes: list[float], left: float, adds_up: bool) -> None:
-    assert left == pytest.approx(cutter.left_by_passes(3.3, passes), abs=1e-12)
-    assert adds_up == cutter.passes_add_up(3.3, passes, readout_step=0.01)
+    assert left == pytest.approx(depth.left_by_passes(3.3, passes), abs=1e-12)
+    assert adds_up == depth.passes_add_up(3.3, passes, readout_step=0.01)
 
 
 def test_a_list_of_passes_without_a_pass_or_with_a_lift_is_refused() -> None:
     with pytest.raises(ValueError, match="no pass"):
-        cutter.left_by_passes(3.3, [])
+        depth.left_by_passes(3.3, [])
     with pytest.raises(ValueError, match="pass 2 must be above zero"):
-        cutter.left_by_passes(3.3, [3.5, -0.2])
+        depth.left_by_passes(3.3, [3.5, -0.2])
     with pytest.raises(ValueError, match="not above the root"):
-        cutter.depth_to_feed(touched_diameter=114.0, root_diameter=115.0)
+        depth.depth_to_feed(touched_diameter=114.0, root_diameter=115.0)
