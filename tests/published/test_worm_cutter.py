@@ -11,7 +11,7 @@ from dataclasses import dataclass
 
 import pytest
 
-from setupcheck.worm import cutter, geometry, insert, tilt
+from setupcheck.worm import cutter, depth, geometry, insert, tilt
 
 FILM = 0.006
 
