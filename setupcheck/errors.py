@@ -4,7 +4,8 @@ from __future__ import annotations
 
 import unicodedata
 from collections.abc import Iterable, Sequence
-from dataclasses import dataclass
+
+from setupcheck.record import record
 
 MOST_SHOWN = 50  # problems printed of one file; our screening choice: nobody repairs more in one go
 WIDEST_LINE = 100  # characters of a source line that are shown; our screening choice
@@ -17,7 +18,7 @@ class SetupcheckError(Exception):
     """Everything this package refuses on purpose. Any other exception is a bug and keeps its traceback."""
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Problem:
     """One thing wrong in one place of a file.
 

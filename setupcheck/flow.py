@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
-from dataclasses import dataclass, field
+from dataclasses import field
 from functools import cache
 from pathlib import Path
 from typing import TYPE_CHECKING
@@ -17,6 +17,7 @@ from setupcheck.quantities.route import walk
 from setupcheck.quantities.scopes import scopes
 from setupcheck.quantities.shop import Floor
 from setupcheck.quantities.tables import TABLES
+from setupcheck.record import record
 from setupcheck.rulebook import (
     Answer,
     Evaluation,
@@ -36,7 +37,7 @@ if TYPE_CHECKING:
     from setupcheck.rulebook.house import House
 
 
-@dataclass(frozen=True, slots=True, eq=False)
+@record(eq=False)
 class Review:
     """Everything one review found.
 
@@ -97,7 +98,7 @@ def review(job: LoadedJob | str | Path, *, house: str | Path | None = None, on: 
         verdict(found.findings, found.cautions),
         results,
         tuple(gates(book.scopes, list(results.items()))),
-        _remedies(loaded, results),
+        _remedies(loaded, floor, results),
         on,
     )
 
@@ -108,13 +109,13 @@ def _house(path: Path, rulebook: RuleBook, book: Book) -> House:
     return load_house(path, rulebook, quantities=book.quantities)
 
 
-def _remedies(loaded: LoadedJob, results: Mapping[str, Result]) -> Mapping[str, Remedy]:
+def _remedies(loaded: LoadedJob, floor: Floor, results: Mapping[str, Result]) -> Mapping[str, Remedy]:
     """Remedies are looked for only where a stack is outside its limit."""
     if all(r.margin is None or r.margin >= 0.0 for r in results.values()):
         return {}
     from setupcheck.quantities.remedies import remedies
 
-    return remedies(loaded, results)
+    return remedies(loaded, floor, results)
 
 
 def prepare(loaded: LoadedJob) -> tuple[Floor, Book]:

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Iterator, Mapping
-from dataclasses import dataclass, field
+from dataclasses import field
 
 from setupcheck import notation
 from setupcheck.jobfile.models import Flat, Pattern, Round, Surface, Toothing
@@ -11,13 +11,14 @@ from setupcheck.jobfile.names import Ref, find_surface, surfaces_of
 from setupcheck.jobfile.nodes import list_of, map_of, name_of, number_of
 from setupcheck.jobfile.types import size_shown
 from setupcheck.notation import NotationError, Units
+from setupcheck.record import record
 
 TOUCH = 1e-6  # mm; two lengths that differ by less are the same: far below every size, far above rounding; our choice
 
 _SPOKEN = {"teeth": "a toothing", "holes": "a hole pattern", "centre": "a centre hole"}
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Drawing:
     """A job file before it is a job. Made by `drawing_of`; everything is looked up once, so that long files stay quick.
 

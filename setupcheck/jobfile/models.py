@@ -3,9 +3,8 @@
 Models that describe a setup stand in `setups.py`. All are frozen and refuse unknown keys.
 """
 
-from __future__ import annotations
-
-from typing import Annotated, Literal
+# Annotations are evaluated as they stand (no __future__ import): pydantic would have to compile each of them from its text.
+from typing import Annotated, Literal, Self
 
 from pydantic import (
     AfterValidator,
@@ -23,6 +22,7 @@ from setupcheck.jobfile.types import (
     Angle,
     AngleBound,
     Bound,
+    Division,
     Expansion,
     Length,
     Limit,
@@ -48,7 +48,8 @@ class Shop(BaseModel):
 class Dimension(Shop):
     """A size with its limits or its measured value: `32 H6`, `32.041 ±0.003`, `{measured: 2.31 mm, uncertainty: 4 um}`.
 
-    lower, upper  deviations from `nominal` [mm]; `uncertainty` is expanded, k = 2
+    lower, upper    deviations from `nominal` [mm]; `uncertainty` is expanded, k = 2
+    at_temperature  of the part as it was measured, the gauge at 20 degC [degC]; the size is then brought back to 20 degC
     """
 
     nominal: Length | None = None
@@ -58,6 +59,7 @@ class Dimension(Shop):
     measured: Length | None = None
     uncertainty: Bound | None = None
     at: str | None = None
+    at_temperature: Temperature | None = None
 
     @model_validator(mode="before")
     @classmethod
@@ -75,7 +77,7 @@ class Dimension(Shop):
         return given
 
     @model_validator(mode="after")
-    def something_is_stated(self) -> Dimension:
+    def something_is_stated(self) -> Self:
         if self.nominal is None and self.measured is None:
             raise ValueError(
                 "this size has neither a nominal nor a measured value. Write a size, or measured: 32.04 mm"
@@ -101,6 +103,7 @@ class Deviation(Shop):
     high_at      where the metal comes nearest the probe: `tooth 14`, `90 deg`, `mark`, `jaw 2`, a surface's name
     device       what held or measured it; alone it takes its typical value
     mark         `kept`: the part goes back the same way round in the same device, so it is one cause in several setups
+    indicator    one division of the indicator that reads it [mm], at a hold
     """
 
     at_most: Bound | None = None
@@ -110,6 +113,7 @@ class Deviation(Shop):
     high_at: str | None = None
     device: str | None = None
     mark: Literal["kept", "lost"] | None = None
+    indicator: Division | None = None
 
     @model_validator(mode="before")
     @classmethod
@@ -119,7 +123,7 @@ class Deviation(Shop):
         return {"at_most": given} if isinstance(given, str | int | float) else given
 
     @model_validator(mode="after")
-    def one_uncertainty(self) -> Deviation:
+    def one_uncertainty(self) -> Self:
         if self.uncertainty is not None and self.standard_uncertainty is not None:
             raise ValueError("uncertainty and standard_uncertainty say the same thing twice. Keep one of them")
         if self.measured is None and self.at_most is None and self.device is None:
@@ -187,7 +191,7 @@ class Round(Shop):
     pitch: Size | None = None
 
     @model_validator(mode="after")
-    def it_has_a_length(self, info: ValidationInfo) -> Round:
+    def it_has_a_length(self, info: ValidationInfo) -> Self:
         low, high = in_file_units(self.low, info), in_file_units(self.high, info)
         if self.high <= self.low:
             raise ValueError(f"it runs from {low} to {high}. Write from: below to:")
@@ -260,7 +264,7 @@ class Relation(Shop):
     length: Dim | None = None
 
     @model_validator(mode="after")
-    def it_states_one_relation(self) -> Relation:
+    def it_states_one_relation(self) -> Self:
         if (self.about is None) == (self.from_ is None):
             raise ValueError("a relation is either `about` an axis or `from` a face. Write one of them")
         if self.from_ is not None and self.length is None:
@@ -419,7 +423,7 @@ class Require(Shop):
     name: str | None = None
 
     @model_validator(mode="after")
-    def it_has_one_limit(self) -> Require:
+    def it_has_one_limit(self) -> Self:
         stated: list[object] = [x for x in (self.between, self.grade) if x is not None]
         stated += [self.at_most] if self.at_most is not None or self.at_least is not None else []
         if len(stated) != 1:

@@ -3,10 +3,10 @@
 from __future__ import annotations
 
 from collections.abc import Iterator, Mapping, Sequence
-from dataclasses import dataclass
 
 from setupcheck.jobfile.nodes import list_of, map_of, name_of
 from setupcheck.notation import nearest, quoted
+from setupcheck.record import record
 
 MACHINE_KINDS = ("lathe", "dividing-head", "rotary-table", "mill", "grinder", "drill-press", "jig-borer", "press")
 """A machine that needs no record of its own may be called by its kind."""
@@ -16,7 +16,7 @@ LONGEST_OP = 6
 """Digits of an operation number; the models allow 1 to 100,000."""
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Ref:
     """A surface of a part, perhaps as one operation left it (`wheel.rim@10`)."""
 
@@ -67,7 +67,7 @@ def _offer(word: str, choices: Sequence[str] | Mapping[str, object], prefix: str
     return f"There is: {listed}" if listed else "Nothing of the kind is in the file"
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Miss:
     """A name that means nothing: where (path in the file) and the whole message; `key` where the key itself is wrong."""
 
@@ -76,7 +76,7 @@ class Miss:
     key: bool = False
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Uses:
     """What the setups of a file do with its surfaces, each as (part, surface).
 

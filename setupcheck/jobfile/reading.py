@@ -6,7 +6,6 @@ import hashlib
 import re
 from collections.abc import Iterable, Iterator, Mapping, Sequence
 from contextlib import suppress
-from dataclasses import dataclass
 from pathlib import Path
 from types import UnionType
 from typing import Annotated, Literal, TypeVar, Union, get_args, get_origin
@@ -15,11 +14,12 @@ from pydantic import BaseModel, TypeAdapter, ValidationError
 from pydantic_core import ErrorDetails
 
 from setupcheck.errors import JobError, Problem
-from setupcheck.jobfile import cuts, directions, given, joints, names, reach, sense
+from setupcheck.jobfile import cuts, directions, gauges, given, joints, names, reach, sense
 from setupcheck.jobfile.drawing import drawing_of
 from setupcheck.jobfile.models import Require, Surface
 from setupcheck.jobfile.setups import Job
 from setupcheck.notation import Units, nearest, plain, quoted
+from setupcheck.record import record
 from setupcheck.yamlfile import Data, Place, Tree, parse, read_text
 
 Loc = tuple[str | int, ...]
@@ -27,7 +27,7 @@ K = TypeVar("K", str, int)
 T = TypeVar("T")
 
 
-@dataclass(frozen=True, slots=True, eq=False)
+@record(eq=False)
 class LoadedJob:
     """A job with the places of its entries.
 
@@ -144,7 +144,7 @@ def _contradictions(data: Mapping[str, Data], job: Job | None) -> Iterator[names
         asked = _readable(TypeAdapter(Require), enumerate(require) if isinstance(require, list) else (), units)
     yield from sense.contradictions(surfaces, asked, names.uses(data), units=units)
     drawing = drawing_of(data, surfaces, units)
-    for check in (reach.beyond, directions.nowhere, joints.misfits, cuts.misstated, given.repeated):
+    for check in (reach.beyond, directions.nowhere, joints.misfits, cuts.misstated, given.repeated, gauges.misplaced):
         yield from check(drawing)
 
 

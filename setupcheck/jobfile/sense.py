@@ -8,11 +8,11 @@ from __future__ import annotations
 
 import math
 from collections.abc import Callable, Iterator, Mapping
-from dataclasses import dataclass
 
 from setupcheck.jobfile.models import Flat, Pattern, Require, Round, Surface, Throat, Toothing
 from setupcheck.jobfile.names import Miss, Ref, Uses, find_surface
 from setupcheck.jobfile.types import size_shown
+from setupcheck.record import record
 
 TOUCH = 1e-6  # mm; two lengths that only touch do not overlap: far below every size, far above rounding; our choice
 
@@ -45,7 +45,7 @@ _DATUMS = {
 """For each step of a hold: kinds of surface it can be set on, what it does, what to write."""
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class _Outside:
     """An outside surface of revolution: its stretch and size, and whether it is stock or taken away by a cut.
 

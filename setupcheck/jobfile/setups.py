@@ -1,8 +1,7 @@
 """The models of a setup: hold, head, divide, cut, join; and the job that holds everything. Sizes mm, angles rad."""
 
-from __future__ import annotations
-
-from typing import Annotated, Literal
+# Annotations are evaluated as they stand (no __future__ import): pydantic would have to compile each of them from its text.
+from typing import Annotated, Literal, Self
 
 from pydantic import BeforeValidator, Field, ValidationInfo, WithJsonSchema, model_validator
 
@@ -27,6 +26,7 @@ from setupcheck.jobfile.types import (
     AngleBound,
     Bound,
     Duration,
+    Force,
     Fraction,
     Length,
     Limit,
@@ -60,6 +60,8 @@ Device = Literal[
     "steady",
 ]
 
+_JAWS = ("three-jaw", "four-jaw", "soft-jaws", "shimmed-jaws")
+
 
 class Through(Shop):
     """One device that stands on another, with its own error: `through: [{by: centres, runout: 4 um}]`, or `[centres]`."""
@@ -80,7 +82,7 @@ class Span(Shop):
     high: Length = Field(alias="to")
 
     @model_validator(mode="after")
-    def it_has_a_length(self, info: ValidationInfo) -> Span:
+    def it_has_a_length(self, info: ValidationInfo) -> Self:
         if self.high <= self.low:
             low, high = in_file_units(self.low, info), in_file_units(self.high, info)
             raise ValueError(f"it runs from {low} to {high}. Write from: below to:")
@@ -93,6 +95,7 @@ class Centre(Shop):
     runout     full indicator movement of the datum as trued, or of the mandrel, spigot or collet that carries it
     clearance  diametral play between datum and device; `rests` says how the part lies in it
     x, y       readings of an edge finder or indicator along two machine axes, each ±
+    grip       stretch of the surface that the jaws or the mandrel hold;  grip_force  of each jaw on the part [N]
     turned     where the part's mark stands from the device's mark
     """
 
@@ -105,8 +108,19 @@ class Centre(Shop):
     x: Bound | None = None
     y: Bound | None = None
     grip: Span | None = None
+    grip_force: Force | None = None
     through: tuple[Through, ...] = ()
     turned: Angle | None = None
+
+    @model_validator(mode="after")
+    def a_grip_force_is_that_of_one_jaw(self) -> Self:
+        if self.grip_force is not None and self.by not in _JAWS:
+            raise ValueError(
+                f"grip_force is the force of one jaw, and {self.by} is not held by jaws. Drop it, or write by: three-jaw"
+            )
+        if self.grip_force == 0.0:
+            raise ValueError("a grip_force of nothing holds nothing. Write the force of one jaw, as in 2 kN")
+        return self
 
 
 class Square(Shop):
@@ -119,7 +133,7 @@ class Square(Shop):
     chip: Bound | None = None
 
     @model_validator(mode="after")
-    def a_reading_has_its_circle(self) -> Square:
+    def a_reading_has_its_circle(self) -> Self:
         if (self.face_runout is not None or self.chip is not None) and self.across is None:
             raise ValueError(
                 "face_runout needs the circle it is read on. Write across: and the diameter of that circle"
@@ -328,7 +342,7 @@ class Join(Shop):
     serves_at: Service | None = None
 
     @model_validator(mode="after")
-    def it_carries_a_torque_and_a_force(self) -> Join:
+    def it_carries_a_torque_and_a_force(self) -> Self:
         for key, kind, example in (("torque", "torque", "40 N m"), ("axial_force", "force", "800 N")):
             given = (self.must_carry or {}).get(key)  # type: ignore[call-overload]
             if given is not None and (given.dimension != kind or given.value < 0.0):
@@ -352,7 +366,7 @@ class Setup(Shop):
     join: Join | None = None
 
     @model_validator(mode="after")
-    def it_cuts_or_joins(self) -> Setup:
+    def it_cuts_or_joins(self) -> Self:
         if self.join is not None and (self.cut or self.hold is not None or self.keeps is not None):
             raise ValueError("a setup either joins two parts or holds and cuts one. Make two setups of it")
         if self.join is None and not self.cut:

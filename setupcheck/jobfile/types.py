@@ -66,6 +66,13 @@ def _bound(given: object, info: ValidationInfo) -> float:
     return notation.bound(_scalar(given), units=units_of(info), unit_needed=True)
 
 
+def _division(given: object, info: ValidationInfo) -> float:
+    value = _bound(given, info)
+    if value == 0.0:
+        raise ValueError("an indicator has divisions. Write one of them, as in indicator: 10 um")
+    return value
+
+
 def _signed_error(given: object, info: ValidationInfo) -> float:
     return notation.length(_scalar(given), units=units_of(info), unit_needed=True)
 
@@ -106,6 +113,8 @@ Size = Annotated[float, BeforeValidator(_positive_size), TEXT_OR_NUMBER]
 """A length above zero [mm]."""
 Bound = Annotated[float, BeforeValidator(_bound), TEXT]
 """A non-negative error bound [mm]; the unit must be written."""
+Division = Annotated[float, BeforeValidator(_division), TEXT]
+"""One division of an indicator [mm], above zero; the unit must be written."""
 Reading = Annotated[float, BeforeValidator(_signed_error), TEXT]
 """A signed measured error [mm]; the unit must be written."""
 Play = Annotated[
@@ -125,6 +134,8 @@ Expansion = Annotated[float, _plain(notation.expansion), TEXT]
 Roughness = Annotated[notation.Roughness, BeforeValidator(lambda given: notation.roughness(_scalar(given))), TEXT]
 """A roughness with its figure, Ra or Rz."""
 Duration = Annotated[float, _plain(notation.duration), TEXT]
+Force = Annotated[float, _plain(notation.force), TEXT]
+"""A force [N]; the unit must be written."""
 Speed = Annotated[float, _plain(notation.speed), TEXT]
 """[rev/min]"""
 Fraction = Annotated[float, _plain(notation.fraction), TEXT_OR_NUMBER]

@@ -10,15 +10,16 @@ from __future__ import annotations
 
 import math
 from collections.abc import Mapping
-from dataclasses import dataclass, field, replace
+from dataclasses import field, replace
 
 from setupcheck.ledger.causes import Cause
+from setupcheck.record import record
 
 NOTHING = 1e-11
 """Coefficients below this have cancelled (rounding of levers up to metres stays under it). Source: our choice."""
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Account:
     """constant + sum (a X + b conj(X)); every operation returns a new account.
 

@@ -8,8 +8,10 @@ from __future__ import annotations
 
 import hashlib
 import math
-from dataclasses import dataclass, field, replace
+from dataclasses import field, replace
 from typing import TYPE_CHECKING, Literal
+
+from setupcheck.record import record
 
 if TYPE_CHECKING:
     from setupcheck.ledger.account import Account
@@ -36,7 +38,7 @@ TRUNCATION_2D = 3.4393
 """The same for a vector: 99.73 % of a two-dimensional Gaussian lie within sqrt(-2 ln 0.0027). Source: Rayleigh law."""
 
 
-@dataclass(frozen=True, slots=True, eq=False)
+@record(eq=False)
 class Cause:
     """One independent error source. Two are the same if name and place in the job file are; `identity` names its stream.
 

@@ -8,7 +8,6 @@ shown and never judged.
 from __future__ import annotations
 
 import math
-from dataclasses import dataclass
 
 import numpy as np
 from numpy.typing import NDArray
@@ -18,6 +17,7 @@ from setupcheck.ledger.account import Account
 from setupcheck.ledger.causes import TRUNCATION, TRUNCATION_2D, Cause, stream_key
 from setupcheck.ledger.figures import Figure, Push
 from setupcheck.ledger.route import Pattern, Scatter
+from setupcheck.record import record
 
 Reals = NDArray[np.floating]
 Complexes = NDArray[np.complexfloating]
@@ -38,7 +38,7 @@ class Draws:
         self._causes: dict[Cause, Complexes] = {}
         self._arcs: dict[int, tuple[Pattern, Reals]] = {}
         self._radials: dict[int, tuple[Pattern, Reals]] = {}
-        self.memo: dict[object, tuple[Reals, Reals]] = {}
+        self.memo: dict[object, Reals] = {}
 
     @staticmethod
     def stream(name: str) -> np.random.Generator:
@@ -113,9 +113,12 @@ class Draws:
     def scatter(self, scatter: Scatter, pattern: Pattern) -> Reals:
         """Per-place values of one scatter as lengths [mm], uniform within its bound, shape (trials, count)."""
         bound = scatter.bound * (pattern.radius if scatter.along == "angle" else 1.0)
-        drawn = self.stream(scatter.cause.identity).random((pattern.count, self.trials), dtype=np.float32)
-        drawn -= np.float32(0.5)
-        drawn *= _single(2.0 * bound)
+        rng = self.stream(scatter.cause.identity)
+        drawn = np.empty((pattern.count, self.trials), dtype=np.float32)
+        for place in drawn:  # one by one, while its values are in the processor's cache
+            rng.random(out=place, dtype=np.float32)
+            place -= np.float32(0.5)
+            place *= _single(2.0 * bound)
         return drawn.T
 
     def arcs(self, pattern: Pattern) -> Reals:
@@ -177,7 +180,7 @@ def _cut_rayleigh(rng: np.random.Generator, n: int) -> Reals:
     return np.asarray(np.sqrt(np.float32(-2.0) * np.log1p(-share)))
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Ends:
     """A figure's two ends; figures that start at zero have `low` = 0."""
 
@@ -185,7 +188,7 @@ class Ends:
     high: float
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Share:
     """One cause's part in a figure: the most it can move it towards the nearer limit, and that as a share of all."""
 
@@ -194,7 +197,7 @@ class Share:
     share: float
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Combined:
     """One figure, combined. All in the figure's base unit; `chance` is None where no limit is stated.
 
@@ -233,8 +236,9 @@ def combine(figure: Figure, draws: Draws, *, low: float | None, high: float | No
     beyond = 1.0 - confidence
     if figure.signed and (low is None) == (high is None):
         beyond /= 2.0
-    ends = float(np.quantile(least, beyond)), float(np.quantile(most, 1.0 - beyond))
-    likely = Ends(max(ends[0], worst.low) if figure.signed else 0.0, min(ends[1], worst.high))
+    ordered = np.sort(values, axis=1)
+    low_end, high_end = _quantile(ordered[0], beyond), _quantile(ordered[-1], 1.0 - beyond)
+    likely = Ends(max(low_end, worst.low) if figure.signed else 0.0, min(high_end, worst.high))
     chance, error = _chance(least, most, worst, low, high)
     total = sum(_towards(p, towards_high) for p in pushes) or 1.0
     shares = sorted(
@@ -242,6 +246,14 @@ def combine(figure: Figure, draws: Draws, *, low: float | None, high: float | No
         key=lambda s: (-s.worst, s.cause.key),
     )
     return Combined(worst, rss, likely, chance, error, base, tuple(shares), "high" if towards_high else "low")
+
+
+def _quantile(ordered: Reals, share: float) -> float:
+    """Value not passed with this probability, linear between neighbours as numpy.quantile has it, at a tenth of its time."""
+    place = share * (len(ordered) - 1)
+    below = math.floor(place)
+    low, high = float(ordered[below]), float(ordered[min(below + 1, len(ordered) - 1)])
+    return low + (high - low) * (place - below)
 
 
 def _towards(push: Push, high: bool) -> float:

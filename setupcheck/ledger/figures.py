@@ -7,7 +7,7 @@ at its known value (`base`), and its value for a set of draws (`sample`). worst 
 from __future__ import annotations
 
 import math
-from dataclasses import dataclass, field
+from dataclasses import field
 from typing import TYPE_CHECKING, Protocol
 
 import numpy as np
@@ -17,6 +17,7 @@ from setupcheck.ledger import teeth
 from setupcheck.ledger.account import Account
 from setupcheck.ledger.causes import Cause
 from setupcheck.ledger.route import Pattern
+from setupcheck.record import record
 
 if TYPE_CHECKING:
     from setupcheck.ledger.combine import Draws
@@ -24,7 +25,7 @@ if TYPE_CHECKING:
 Reals = NDArray[np.floating]
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Push:
     """How far one cause can move a figure, in the figure's unit: down by `down`, up by `up`.
 
@@ -89,7 +90,7 @@ def merged(*lists: list[Push]) -> list[Push]:
     return list(total.values())
 
 
-@dataclass(frozen=True, slots=True, eq=False)
+@record(eq=False)
 class Vector:
     """factor times the largest of |account|: run-out (2), face run-out (across), coaxial (2), squareness (1 or across)."""
 
@@ -116,7 +117,7 @@ class Vector:
         return np.asarray(values * self.factor)
 
 
-@dataclass(frozen=True, slots=True, eq=False)
+@record(eq=False)
 class Length:
     """A signed axial distance or deviation [mm], the nominal distance included."""
 
@@ -136,7 +137,7 @@ class Length:
         return draws.real(self.account)
 
 
-@dataclass(frozen=True, slots=True, eq=False)
+@record(eq=False)
 class OverATurn:
     """A length that swings once a turn with an eccentricity: account -+ factor |offset|. Both ends count.
 
@@ -166,7 +167,7 @@ class OverATurn:
         return np.asarray([middle - swing, middle + swing])
 
 
-@dataclass(frozen=True, slots=True, eq=False)
+@record(eq=False)
 class Stock:
     """Radial stock left at the worst place round the part [mm]: depth - largest |offset| at the ends of the cut.
 
@@ -193,7 +194,7 @@ class Stock:
         return np.asarray(self.depth - self._vector().sample(draws))
 
 
-@dataclass(frozen=True, slots=True, eq=False)
+@record(eq=False)
 class MidPlane:
     """Distance of the tooth mid-plane from where it belongs, worst tooth [mm]: max over j of |a - Re(conj(t) r e^(i theta_j))|.
 
@@ -227,7 +228,7 @@ class MidPlane:
         return np.asarray(np.maximum(np.abs(axial - r * high), np.abs(axial - r * low)))
 
 
-@dataclass(frozen=True, slots=True, eq=False)
+@record(eq=False)
 class Tooth:
     """A figure of the division of teeth, gaps or holes.
 
@@ -296,38 +297,28 @@ class Tooth:
         return tuple(dict.fromkeys((*self.offset.undetermined(), *self.oblique.undetermined(), *mine)))
 
     def sample(self, draws: Draws) -> Reals:
-        ranges, steps = self._ranges_and_steps(draws)
-        return np.asarray((steps if self.stepwise else ranges) * self.factor)
+        return np.asarray(self._over_the_turn(draws) * self.factor)
 
     def _has_radial(self) -> bool:
         return any(s.along == "radial" for s in self.pattern.scatter)
 
-    def _ranges_and_steps(self, draws: Draws) -> tuple[Reals, Reals]:
-        """Range and largest step of the worse flank for all trials [mm]; figures of one ring share them."""
+    def _over_the_turn(self, draws: Draws) -> Reals:
+        """Range or largest step of the worse flank for all trials [mm]; figures of one ring share it."""
         waves = [self._wave(side) for side in self._sides()]
         terms = frozenset((i, c.identity, a, b) for i, w in enumerate(waves) for c, (a, b) in w.terms.items())
-        key = (id(self.pattern), tuple(w.constant for w in waves), terms)
+        key = (self.stepwise, id(self.pattern), tuple(w.constant for w in waves), terms)
         found = draws.memo.get(key)
-        if found is not None:
-            return found
-        vectors, arcs = [draws.account(w) * -1j for w in waves], draws.arcs(self.pattern)
-        deep = draws.radials(self.pattern) * np.float32(self._deeper()) if self._has_radial() else None
-        places = teeth.angles(self.pattern)
-        ranges, steps = np.zeros(draws.trials, np.float32), np.zeros(draws.trials, np.float32)
-        block = max(1, teeth.BLOCK // self.pattern.count)
-        for start in range(0, draws.trials, block):
-            now = slice(start, start + block)
-            for side, vector in zip(self._sides(), vectors, strict=True):
-                flank = teeth.waves(vector[now], places) + arcs[now]
-                if deep is not None:
-                    flank += np.float32(side) * deep[now]
-                ranges[now] = np.maximum(ranges[now], teeth.ranges(flank))
-                steps[now] = np.maximum(steps[now], teeth.largest_steps(flank))
-        draws.memo[key] = ranges, steps
-        return ranges, steps
+        if found is None:
+            figure = teeth.largest_steps if self.stepwise else teeth.ranges
+            places, arcs = teeth.angles(self.pattern), draws.arcs(self.pattern)
+            deep = draws.radials(self.pattern) * np.float32(self._deeper()) if self._has_radial() else None
+            own = [arcs if deep is None else arcs + np.float32(side) * deep for side in self._sides()]
+            found = teeth.figure_of(figure, [draws.account(w) * -1j for w in waves], places, own)
+            draws.memo[key] = found
+        return found
 
 
-@dataclass(frozen=True, slots=True, eq=False)
+@record(eq=False)
 class ToothRunOut:
     """Run-out of gaps or holes that also scatter outwards: factor (max - min over j of e cos(phi - theta_j) + r_j).
 
@@ -351,11 +342,11 @@ class ToothRunOut:
         return self.offset.undetermined()
 
     def sample(self, draws: Draws) -> Reals:
-        places = teeth.waves(draws.account(self.offset), teeth.angles(self.pattern)) + draws.radials(self.pattern)
-        return np.asarray(teeth.ranges(places) * self.factor)
+        around, radials = teeth.angles(self.pattern), draws.radials(self.pattern)
+        return np.asarray(teeth.figure_of(teeth.ranges, [draws.account(self.offset)], around, [radials]) * self.factor)
 
 
-@dataclass(frozen=True, slots=True, eq=False)
+@record(eq=False)
 class FaceStock:
     """Axial stock left on a face where the cut is thinnest [mm]: depth - radius |lean between old and new face|.
 

@@ -4,7 +4,6 @@ from __future__ import annotations
 
 import cmath
 import math
-from dataclasses import dataclass
 from typing import TYPE_CHECKING
 
 import numpy as np
@@ -14,12 +13,13 @@ from setupcheck.ledger import teeth
 from setupcheck.ledger.account import Account
 from setupcheck.ledger.figures import Push, Reals, merged, real_pushes, vector_pushes
 from setupcheck.ledger.route import Pattern
+from setupcheck.record import record
 
 if TYPE_CHECKING:
     from setupcheck.ledger.combine import Draws
 
 
-@dataclass(frozen=True, slots=True, eq=False)
+@record(eq=False)
 class HolePosition:
     """Position of holes: twice the largest vector from where a hole belongs [mm].
 
@@ -80,7 +80,7 @@ class HolePosition:
         return np.asarray(2.0 * np.abs(self.vectors(draws)).max(axis=1))
 
 
-@dataclass(frozen=True, slots=True, eq=False)
+@record(eq=False)
 class HoleChord:
     """Largest error of the distance between neighbouring holes [mm]; the offset and the turn of the pattern cancel.
 
@@ -129,7 +129,7 @@ class HoleChord:
         return np.asarray(np.abs(step * math.cos(math.pi / n) + both * math.sin(math.pi / n)).max(axis=1))
 
 
-@dataclass(frozen=True, slots=True, eq=False)
+@record(eq=False)
 class PitchCircle:
     """Error of the diameter of the circle through the holes [mm]: twice the mean radial error (least-squares circle).
 

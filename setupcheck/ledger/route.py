@@ -11,13 +11,14 @@ exact rigid-body simulation that shares no code with this package.
 from __future__ import annotations
 
 import cmath
-from dataclasses import dataclass, field, replace
+from dataclasses import field, replace
 
 from setupcheck.ledger.account import Account, real
 from setupcheck.ledger.causes import Cause
+from setupcheck.record import record
 
 
-@dataclass(frozen=True, slots=True, eq=False)
+@record(eq=False)
 class Scatter:
     """Errors that each tooth or hole draws for itself: uniform within +-`bound`.
 
@@ -29,7 +30,7 @@ class Scatter:
     bound: float
 
 
-@dataclass(frozen=True, slots=True, eq=False)
+@record(eq=False)
 class Periodic:
     """An index error that comes `harmonic` times per turn of the work: Delta_j = Re(X exp(-i h theta_j)) [rad]."""
 
@@ -37,7 +38,7 @@ class Periodic:
     harmonic: int
 
 
-@dataclass(frozen=True, slots=True, eq=False)
+@record(eq=False)
 class Pattern:
     """Teeth or holes: `count` places on radius `radius`, the j-th cut at theta_j = turn 2 pi (j - 1)/count + start.
 
@@ -63,7 +64,7 @@ class Pattern:
         return self.start + self.turn * cmath.tau * (number - 1) / self.count if self.count else self.start
 
 
-@dataclass(frozen=True, slots=True, eq=False)
+@record(eq=False)
 class State:
     """One surface as one operation left it.
 
@@ -105,7 +106,7 @@ class State:
         return self.offset + self.lean * (z - self.z)
 
 
-@dataclass(frozen=True, slots=True, eq=False)
+@record(eq=False)
 class Placing:
     """One rigid small displacement, found from datums: the machine (or a mating part) seen from the part.
 
@@ -235,7 +236,7 @@ def cut(
     )
 
 
-@dataclass(frozen=True, slots=True, eq=False)
+@record(eq=False)
 class Seat:
     """How the inner part's frame lies in the outer part's: z_outer = sense z_inner + shift, turned by `turned` [rad]."""
 

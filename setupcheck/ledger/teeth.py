@@ -15,14 +15,16 @@ involute in the tests agrees within 0.03 um at e = 20 um.
 from __future__ import annotations
 
 import cmath
+import functools
 import math
-from dataclasses import dataclass
+from collections.abc import Callable, Iterator, Sequence
 
 import numpy as np
 from numpy.typing import NDArray
 
 from setupcheck.ledger.account import Account
 from setupcheck.ledger.route import Pattern
+from setupcheck.record import record
 
 Reals = NDArray[np.floating]
 Complexes = NDArray[np.complexfloating]
@@ -97,20 +99,42 @@ def division_arcs(
 
 def waves(vectors: Complexes, at: Reals) -> Reals:
     """Re(X exp(-i theta)) for every vector and angle, shape (len(vectors), len(at)), places lying apart in memory."""
+    return np.concatenate(list(_waves(vectors, at)))
+
+
+def _waves(vectors: Complexes, at: Reals) -> Iterator[Reals]:
+    """The same, block by block of the vectors."""
     basis = np.stack([np.cos(at), np.sin(at)], axis=1).astype(np.float32)
     parts = np.stack([vectors.real, vectors.imag]).astype(np.float32)
-    return np.asarray((basis @ parts).T)
+    block = max(1, BLOCK // len(at))
+    for start in range(0, len(vectors), block):
+        yield (basis @ parts[:, start : start + block]).T
+
+
+def figure_of(
+    figure: Callable[[Reals], Reals], vectors: Sequence[Complexes], at: Reals, added: Sequence[Reals]
+) -> Reals:
+    """Largest over the flanks of figure(waves(vectors, at) + added), one value a trial.
+
+    figure   of every trial's places: `ranges` or `largest_steps`
+    vectors  one array (trials,) a flank;  added  one array (trials, len(at)) a flank
+    """
+    blocks = zip(*(_waves(v, at) for v in vectors), strict=True)
+    found, start = [], 0
+    for flanks in blocks:
+        now = slice(start, start + len(flanks[0]))
+        for flank, more in zip(flanks, added, strict=True):
+            flank += more[now]
+        found.append(functools.reduce(np.maximum, map(figure, flanks)))
+        start = now.stop
+    return np.concatenate(found)
 
 
 def wave_ends(vectors: Complexes, at: Reals) -> tuple[Reals, Reals]:
     """Lowest and highest of Re(X exp(-i theta)) over the angles, each of shape (len(vectors),)."""
-    low, high = np.empty(len(vectors), np.float32), np.empty(len(vectors), np.float32)
-    block = max(1, BLOCK // len(at))
-    for start in range(0, len(vectors), block):
-        now = slice(start, start + block)
-        part = waves(vectors[now], at)
-        low[now], high[now] = part.min(axis=1), part.max(axis=1)
-    return low, high
+    ends = [(part.min(axis=1), part.max(axis=1)) for part in _waves(vectors, at)]
+    low, high = zip(*ends, strict=True)
+    return np.concatenate(low), np.concatenate(high)
 
 
 def flank_turn(pattern: Pattern, *, side: int, driven: bool) -> complex:
@@ -161,11 +185,12 @@ def ranges(arcs: Reals) -> Reals:
 
 def largest_steps(arcs: Reals) -> Reals:
     """Largest |step| between neighbours, the closing one included, shape (trials,)."""
-    between = np.abs(np.diff(arcs, axis=1)).max(axis=1)
+    steps = np.diff(arcs, axis=1)
+    between = np.abs(steps, out=steps).max(axis=1, initial=0.0)
     return np.asarray(np.maximum(between, np.abs(arcs[:, 0] - arcs[:, -1])))
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Gain:
     """Worst-case factor of each kind of error on one tooth figure (figure per unit of error)."""
 

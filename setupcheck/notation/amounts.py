@@ -4,7 +4,6 @@ from __future__ import annotations
 
 import math
 import re
-from dataclasses import dataclass
 from typing import Literal, NoReturn
 
 from setupcheck.notation.angles import angle, angle_bound
@@ -38,6 +37,7 @@ from setupcheck.notation.units import (
     spelling,
 )
 from setupcheck.notation.wording import Given, NotationError, plain, quoted, tidy
+from setupcheck.record import record
 
 COLDEST = -273.15  # degC, absolute zero (definition of the kelvin)
 HOTTEST = 2000.0  # degC; no part of this trade is hotter; our screening choice
@@ -56,7 +56,7 @@ Dimension = Literal[
 ]  # fmt: skip
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Roughness:
     """A roughness figure of ISO 21920 (before: ISO 4287): which one, and its height [mm]."""
 
@@ -64,7 +64,7 @@ class Roughness:
     height: float
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Amount:
     """A value in the base unit of its dimension (rad for angles, a share of 1 for fractions)."""
 

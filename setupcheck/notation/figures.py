@@ -5,11 +5,11 @@ from __future__ import annotations
 import math
 import re
 from collections.abc import Iterable
-from dataclasses import dataclass
 from typing import NoReturn
 
 from setupcheck.notation.units import Kind, Ratio, kind_of, spelling
 from setupcheck.notation.wording import Given, NotationError, nearest, plain, quoted, tidy
+from setupcheck.record import record
 
 LONGEST_TEXT = 200  # characters of one entry; our screening choice
 MOST_DIGITS = 30  # digits of one number; our screening choice
@@ -23,7 +23,7 @@ _FRACTION_PARTS = (2, 4, 8, 16, 32, 64, 128)  # divisions of the inch on rules a
 _INCHES = frozenset({"in", "in.", "inch", "inches", '"'})
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Figure:
     """A number with the unit as written ("" when there was none), and the text it came from for messages."""
 

@@ -3,13 +3,13 @@
 from __future__ import annotations
 
 import re
-from dataclasses import dataclass
 from typing import NoReturn
 
 from setupcheck.notation.figures import NUMBER, Figure, figure, refuse_odd_characters, text_of
 from setupcheck.notation.lengths import LONGEST, Units, length_in_mm
 from setupcheck.notation.units import LENGTH, Kind
 from setupcheck.notation.wording import Given, NotationError, quoted, tidy
+from setupcheck.record import record
 
 SIZE = Kind("length", "a size", LENGTH.units, LENGTH.write, "32 H6 or 32.041 \u00b10.003", LENGTH.traps)
 
@@ -31,7 +31,7 @@ _FIT_APART = re.compile(r"(.*?)\s([A-Za-z]{1,2})\s+([0-9]{1,2})")
 _TWO_CLASSES = re.compile(r".*[A-Za-z][0-9]{1,2}\s*/\s*[A-Za-z]{1,2}[0-9]{1,2}")
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Size:
     """A nominal size and what may depart from it.
 

@@ -10,7 +10,9 @@ from __future__ import annotations
 
 import re
 from collections.abc import Mapping
-from dataclasses import dataclass, field
+from dataclasses import field
+
+from setupcheck.record import record
 
 Ratio = tuple[int, int]  # numerator, denominator > 0
 
@@ -22,7 +24,7 @@ _LBF_IN: Ratio = (_LBF[0] * _INCH[0], _LBF[1] * _INCH[1])
 _PSI: Ratio = (_LBF[0] * _INCH[1] ** 2, _LBF[1] * _INCH[0] ** 2)  # N/mm2
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Kind:
     """What sort of thing a text stands for.
 

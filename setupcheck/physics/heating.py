@@ -7,7 +7,8 @@ safe depends on the question: `materials.expansion_for` picks it. Heat flow is c
 from __future__ import annotations
 
 import math
-from dataclasses import dataclass
+
+from setupcheck.record import record
 
 REFERENCE_TEMPERATURE = 20.0
 """Temperature of sizes [degC]. Source: ISO 1."""
@@ -27,7 +28,7 @@ AIR_CONDUCTIVITY = 0.03
 _STEPS = 400  # of the time integration; the tests compare with scipy and published times
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Temperatures:
     """A band of temperatures [degC]; low above high: there is none."""
 
@@ -35,7 +36,7 @@ class Temperatures:
     high: float
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@record(kw_only=True)
 class Ring:
     """A hot ring (hub) in the air. bore, outside, length [mm], density [kg/m3], specific_heat [J/kgK], emissivity 0 .. 1.
 

@@ -9,7 +9,8 @@ from __future__ import annotations
 
 import math
 from collections.abc import Iterable
-from dataclasses import dataclass
+
+from setupcheck.record import record
 
 SMOOTHING_FACTOR = 0.8
 """Share of the two Rz lost on diameter. Source: DIN 7190:1988/2001 (from memory); the 2017 edition is said, in a secondary
@@ -20,7 +21,7 @@ BRITTLE = "tangential stress at the bore against tensile strength"
 """Name of the criterion for brittle hubs. Source: common practice for grey iron (from memory)."""
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@record(kw_only=True)
 class Joint:
     """Sizes and elastic constants of one joint of constant section.
 
@@ -76,7 +77,7 @@ class Joint:
         return ((1.0 + q) / (1.0 - q) - self.shaft_poisson) / self.shaft_modulus
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Stresses:
     """Stresses of one pressure [MPa], pull positive. The radial ones are -p at bore and seat, 0 on free surfaces.
 
@@ -90,7 +91,7 @@ class Stresses:
     shaft_hole_tangential: float | None
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class ElasticLimit:
     """Where the weaker part begins to yield (or a brittle hub reaches its allowed stress).
 
@@ -103,7 +104,7 @@ class ElasticLimit:
     criterion: str
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Slice:
     """A length [mm] of a stepped hub or shaft with constant section."""
 

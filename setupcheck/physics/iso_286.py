@@ -21,6 +21,8 @@ from collections.abc import Iterable, Mapping
 from dataclasses import dataclass, field
 from itertools import pairwise
 
+from setupcheck.record import record
+
 LARGEST = 500.0
 """Largest size of the tables [mm]. Source: ISO 286-1 has other formulas above it (from memory)."""
 
@@ -46,7 +48,7 @@ _GRADE = re.compile(r"IT([1-9][0-9]?)")
 _NOISE = 1e-9  # mm; a smaller difference of two limits is only binary fractions (our screening choice)
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Cell:
     """One number of the tables.
 
@@ -65,7 +67,7 @@ class Cell:
     doubtful: bool = False
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Tables:
     """Cells of every column, by rising size; `exceptions` are upper deviations printed off the rule."""
 
@@ -77,7 +79,7 @@ class Tables:
         return tuple(sorted(int(column[2:]) for column in self.columns if column.startswith("IT")))
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Limits:
     """Deviations from the nominal size [mm], lower <= upper (EI and ES of a hole, ei and es of a shaft)."""
 
@@ -89,7 +91,7 @@ class Limits:
             raise ValueError(f"the lower deviation {self.lower:g} mm is above the upper one, {self.upper:g} mm")
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Play:
     """Least and most play of a joint on the diameter [mm]; below zero it is interference."""
 

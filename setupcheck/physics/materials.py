@@ -5,10 +5,10 @@ A property that scatters is kept as low and high. A question takes the end that 
 
 from __future__ import annotations
 
-from dataclasses import dataclass
 from typing import Literal
 
 from setupcheck.physics.heating import REFERENCE_TEMPERATURE
+from setupcheck.record import record
 
 EVIDENCE = ("standard", "published", "shop record", "common practice", "screening choice", "from memory")
 """How good a number is, best first."""
@@ -33,7 +33,7 @@ press force. joining: largest hub temperature needed. growth: largest growth of 
 of a hollow shaft's hole, by a given interference."""
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Value:
     """One number in base units, how good it is (one of EVIDENCE) and what it means."""
 
@@ -42,7 +42,7 @@ class Value:
     note: str = ""
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Range:
     """Lowest and highest of a number that scatters, how good they are and what they mean."""
 
@@ -52,7 +52,7 @@ class Range:
     note: str = ""
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Chosen:
     """The end of a range that was taken, for the working: value, which end, and why in words."""
 
@@ -62,7 +62,7 @@ class Chosen:
     kind: str
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@record(kw_only=True)
 class Material:
     """One material as the shop names it. None: the condition decides, the job has to say.
 

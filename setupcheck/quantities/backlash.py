@@ -6,7 +6,6 @@ j = s2 - s_x + 2 (a - r1 - r2) tan(alpha) - growth tan(alpha) + temperature -+ 2
 from __future__ import annotations
 
 import math
-from dataclasses import dataclass
 from itertools import product
 
 from setupcheck.jobfile.models import Dimension
@@ -26,6 +25,7 @@ from setupcheck.quantities.relations import Built, pair, second_order
 from setupcheck.quantities.requirements import Stack
 from setupcheck.quantities.shop import Floor
 from setupcheck.quantities.stuff import expansion_of, material_of
+from setupcheck.record import record
 from setupcheck.worm.geometry import normal_pressure_angle
 
 ALONG = ("circular", "normal")
@@ -33,7 +33,7 @@ ALONG = ("circular", "normal")
 REFERENCE = 20.0  # degC of all sizes, ISO 1
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Span:
     """Least and largest of something that is not random but has a range [mm]."""
 

@@ -11,6 +11,8 @@ from collections.abc import Callable, Iterator, Mapping, Sequence
 from dataclasses import dataclass, field
 from typing import Protocol, runtime_checkable
 
+from setupcheck.record import record
+
 SINGLE = frozenset({"job", "place", "worm", "mesh"})
 """Kinds of thing of which a job has at most one, so they are found from anywhere."""
 
@@ -57,7 +59,7 @@ class Scope:
             yield from outer.outward()
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Known:
     """A value, and the typical values it was made with."""
 
@@ -65,7 +67,7 @@ class Known:
     rests_on: frozenset[str] = frozenset()
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Open:
     """No value: the job paths to fill, or the reason."""
 
@@ -80,7 +82,7 @@ class OutOfRange(ValueError):
     """Raised by a formula outside its stated validity."""
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Quantity:
     """One row of a table of quantities.
 

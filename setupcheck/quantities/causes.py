@@ -4,17 +4,18 @@ from __future__ import annotations
 
 import cmath
 import math
-from dataclasses import dataclass, replace
+from dataclasses import replace
 
 from setupcheck.jobfile.models import Deviation, Dimension
 from setupcheck.ledger.account import Account, face_reading_to_lean, fim_to_eccentricity
 from setupcheck.ledger.causes import Cause, Law
 from setupcheck.ledger.route import part_vector
 from setupcheck.notation import NotationError, angle, show
-from setupcheck.quantities.typical import typical
+from setupcheck.quantities.typical import typical, typical_length
+from setupcheck.record import record
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Towards:
     """A direction, if one is known: `angle` [rad] in the part frame, or in the machine's (`of_machine`).
 
@@ -26,7 +27,7 @@ class Towards:
     why: str = "unknown"
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Turned:
     """How the part lies in the machine: sense and the angle of its mark from the machine's mark [rad]."""
 
@@ -37,7 +38,7 @@ class Turned:
         return part_vector(vector, sg=self.sg, inserted_at=self.inserted_at)
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Entry:
     """Where an error entry stands: its name in shop words, operation, path, and the device it falls back on.
 
@@ -131,7 +132,10 @@ def face_lean(
 
 
 def length_error(given: Deviation | None, entry: Entry) -> Account:
-    """A length error: a bound is rectangular, a measured one its value with a Gaussian around it."""
+    """A length error: a bound is rectangular, a measured one its value with a Gaussian around it.
+
+    A device alone takes its typical reading, touch or position, rectangular as well.
+    """
     if given is None:
         return Account.of(entry.missing())
     if given.measured is not None:
@@ -147,7 +151,12 @@ def length_error(given: Deviation | None, entry: Entry) -> Account:
     elif given.at_most is not None:
         cause = Cause(entry.name, "length", entry.op, high=given.at_most, paths=(entry.path,))
     else:
-        return Account.of(replace(entry.missing(), missing=f"{entry.path}.at_most"))
+        row = typical_length(given.device or entry.device)
+        if row is None:
+            return Account.of(replace(entry.missing(), missing=f"{entry.path}.at_most"))
+        cause = Cause(
+            entry.name, "length", entry.op, high=row.value, mode="typical", paths=(entry.path,), rests_on=row.name
+        )
     return Account.of(cause)
 
 

@@ -3,13 +3,13 @@
 from __future__ import annotations
 
 import math
-from dataclasses import dataclass
 
 from setupcheck.jobfile.models import Round, Throat
 from setupcheck.quantities.book import Open, OutOfRange, Quantity
 from setupcheck.quantities.drive import WheelCut, drive, wheel_cut
 from setupcheck.quantities.scopes import CutEntry
 from setupcheck.quantities.shop import Floor
+from setupcheck.record import record
 from setupcheck.worm import cutter as fly
 from setupcheck.worm.geometry import fewest_teeth
 
@@ -17,7 +17,7 @@ USUAL_FILM = 0.006
 """Thickness of marking blue that a contact share is told for where no requirement says one [mm]. Common practice, 5 to 7 um."""
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Shape:
     """Second-order shape of the flank that the cutter leaves: crowning A and twist B [1/mm], ends of the face."""
 
@@ -266,11 +266,18 @@ def teeth(cut: WheelCut) -> float:
     return float(cut.drive.teeth)
 
 
-def overhang(entry: CutEntry, floor: Floor) -> float | None:
-    """Overhang of the cutter's bar over its diameter; None where one of them is not stated. Source: the job file."""
-    cutter = floor.loaded.job.cutters[entry.cut.cutter] if entry.cut.cutter is not None else None
-    if cutter is None or cutter.overhang is None or cutter.bar_diameter is None:
+def overhang(entry: CutEntry, floor: Floor) -> float | Open | None:
+    """Overhang of the cutter's bar over its diameter; a boring head always has a bar, others where either is stated.
+
+    Source: the job file.
+    """
+    name = entry.cut.cutter
+    cutter = floor.loaded.job.cutters[name] if name is not None else None
+    if cutter is None or (cutter.kind != "boring-head" and cutter.overhang is None and cutter.bar_diameter is None):
         return None
+    if cutter.overhang is None or cutter.bar_diameter is None:
+        keys = ("overhang", "bar_diameter")
+        return Open(tuple(f"cutters.{name}.{key}" for key in keys if getattr(cutter, key) is None))
     return cutter.overhang / cutter.bar_diameter
 
 

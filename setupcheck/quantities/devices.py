@@ -2,10 +2,10 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from setupcheck.record import record
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Device:
     """How a device takes a part.
 

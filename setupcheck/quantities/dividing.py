@@ -3,13 +3,15 @@
 from __future__ import annotations
 
 from collections.abc import Iterator
+from dataclasses import replace
 
 from setupcheck.division.methods import rounded_settings
-from setupcheck.jobfile.setups import Cut, Divide
+from setupcheck.jobfile.setups import Cut, Divide, Waves
 from setupcheck.ledger.account import Account
 from setupcheck.ledger.causes import Cause
 from setupcheck.ledger.route import Pattern, Periodic, Scatter
 from setupcheck.quantities.causes import Entry, size_error
+from setupcheck.quantities.typical import Typical, typical
 
 
 def divided(
@@ -17,7 +19,8 @@ def divided(
 ) -> Pattern:
     """The pattern with the errors of the dividing method and of the single places.
 
-    No `divide` entry: the division is undetermined, unless there is only one place.
+    No `divide` entry: the division is undetermined, unless there is only one place. An entry without any error of the
+    device takes the typical ones of its way of dividing.
     """
     path = f"setups.{op}.divide"
     head = f"op {op}, dividing {name}"
@@ -26,8 +29,15 @@ def divided(
     drift: list[Cause] = []
     rounding: tuple[float, ...] = ()
 
+    taken: dict[str, Typical] = {}
+
+    def made(cause: Cause, key: str) -> Cause:
+        row = taken.get(key)
+        return cause if row is None else replace(cause, mode="typical", rests_on=row.name)
+
     def wave(what: str, bound: float, harmonic: int, key: str) -> None:
-        periodic.append(Periodic(Cause(f"{head}: {what}", "disc", op, high=bound, paths=(f"{path}.{key}",)), harmonic))
+        cause = Cause(f"{head}: {what}", "disc", op, high=bound, paths=(f"{path}.{key}",))
+        periodic.append(Periodic(made(cause, key), harmonic))
 
     if divide is None:
         if pattern.count > 1:
@@ -35,6 +45,9 @@ def divided(
                 Scatter(Cause(f"{head}: how the circle is divided", "undetermined", op, missing=path), "angle", 0.0)
             )
     else:
+        if pattern.count > 1:
+            taken = typical_errors(divide)
+            divide = _filled(divide, taken)
         if divide.wheel is None and divide.setting is None and pattern.count > 1:
             scatter.append(
                 Scatter(
@@ -50,7 +63,7 @@ def divided(
         for what, bound, key in (("setting", divide.setting, "setting"), ("clamping shift", divide.clamp, "clamp")):
             if bound:
                 cause = Cause(f"{head}: {what}", "length", op, high=bound, paths=(f"{path}.{key}",))
-                scatter.append(Scatter(cause, "angle", bound))
+                scatter.append(Scatter(made(cause, key), "angle", bound))
         if divide.drift:
             drift.append(
                 Cause(f"{head}: drift over the turn", "length", op, high=divide.drift, paths=(f"{path}.drift",))
@@ -77,6 +90,32 @@ def divided(
         rounding,
         tuple(drift),
         _table_offset(cut, op, name, pattern.radius)[0],
+    )
+
+
+def typical_errors(divide: Divide) -> dict[str, Typical]:
+    """Typical errors of the way of dividing, by the keys they stand in for; empty where the job states the device's error.
+
+    A worm that is stated keeps what is stated of it. A way that is not in the table (`x-y`) has none and stays open.
+    """
+    if divide.wheel is not None or divide.setting is not None:
+        return {}
+    keys = {"wheel.once_per_turn": "once_per_turn", "setting": "setting"}
+    if divide.worm is None:
+        keys["worm.once_per_crank"] = "once_per_crank"
+    rows = {key: typical(divide.by, what) for key, what in keys.items()}
+    return {key: row for key, row in rows.items() if row is not None}
+
+
+def _filled(divide: Divide, taken: dict[str, Typical]) -> Divide:
+    """The entry with typical values put where it states none."""
+    wheel, worm, setting = (taken.get(key) for key in ("wheel.once_per_turn", "worm.once_per_crank", "setting"))
+    return divide.model_copy(
+        update={
+            **({"wheel": Waves.model_construct(once_per_turn=wheel.value)} if wheel is not None else {}),
+            **({"worm": Waves.model_construct(once_per_crank=worm.value)} if worm is not None else {}),
+            **({"setting": setting.value} if setting is not None else {}),
+        }
     )
 
 

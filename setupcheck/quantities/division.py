@@ -3,9 +3,10 @@
 from __future__ import annotations
 
 from setupcheck.division.methods import circles_that_fit, holes_left_over, rounded_settings
-from setupcheck.jobfile.setups import Setup
+from setupcheck.jobfile.setups import Divide, Setup
 from setupcheck.ledger.teeth import folded
-from setupcheck.quantities.book import Open, OutOfRange, Quantity
+from setupcheck.quantities.book import Known, Open, OutOfRange, Quantity
+from setupcheck.quantities.dividing import typical_errors
 from setupcheck.quantities.route import machine_of
 from setupcheck.quantities.shop import Floor
 
@@ -62,10 +63,18 @@ def circles(floor: Floor, setup: Setup, worm_ratio: int, count: int) -> str | No
     )
 
 
-def crank_error(setup: Setup) -> float | None:
-    """Amplitude of the error that comes once per turn of the crank [rad]. Source: the job file."""
-    worm = setup.divide.worm if setup.divide is not None else None
-    return (worm.once_per_crank or worm.once_per_turn or None) if worm is not None else None
+def crank_error(setup: Setup) -> float | Known | None:
+    """Amplitude of the error that comes once per turn of the crank [rad]. Source: the job file, else the typical one."""
+    if setup.divide is None:
+        return None
+    if setup.divide.worm is not None:
+        return setup.divide.worm.once_per_crank or setup.divide.worm.once_per_turn or None
+    return _typical(setup.divide, "worm.once_per_crank")
+
+
+def _typical(divide: Divide, key: str) -> Known | None:
+    row = typical_errors(divide).get(key)
+    return Known(row.value, frozenset({row.name})) if row is not None else None
 
 
 def folded_harmonic(crank_error: float, worm_ratio: int, count: int) -> float | None:
@@ -90,23 +99,28 @@ def step_error(count: int, step: float) -> float:
         raise OutOfRange(str(why)) from None
 
 
-def setting_error(setup: Setup) -> float | None:
-    """Stated error of one setting [rad]. Source: the job file."""
-    return setup.divide.setting if setup.divide is not None else None
+def setting_error(setup: Setup) -> float | Known | None:
+    """Error of one setting [rad]. Source: the job file, else the typical one."""
+    if setup.divide is None:
+        return None
+    return setup.divide.setting if setup.divide.setting is not None else _typical(setup.divide, "setting")
 
 
 def stated(setup: Setup, count: int) -> str | Open:
-    """`stated` where the dividing device's own error is; open with the key to fill. Source: the job file."""
+    """stated or typical, of the dividing device's own error; open with the key to fill.
+
+    Source: the job file; where it states no error, the typical ones of the way of dividing.
+    """
     if setup.divide is None:
         return Open((f"setups.{setup.op}.divide",))
-    if setup.divide.wheel is None and setup.divide.setting is None:
-        return Open((f"setups.{setup.op}.divide.wheel",))
     assert count > 1
-    return "stated"
+    if setup.divide.wheel is not None or setup.divide.setting is not None:
+        return "stated"
+    return "typical" if typical_errors(setup.divide) else Open((f"setups.{setup.op}.divide.wheel",))
 
 
 def known_kind(stated: str) -> str:
-    """`stated`, of errors that are not missing (missing ones have their own finding). Source: the job file."""
+    """stated or typical, of errors that are not missing (missing ones have their own finding). Source: the job file."""
     return stated
 
 
@@ -156,9 +170,7 @@ DIVIDE = (
         {**COUNT, "step": "divide.step"},
         "largest error of a setting rounded to the readout's step",
     ),
-    Quantity(
-        "divide.setting_error", "setup", "arcsec", 2, setting_error, {"setup": ":"}, "error of one setting as stated"
-    ),
+    Quantity("divide.setting_error", "setup", "arcsec", 2, setting_error, {"setup": ":"}, "error of one setting"),
     Quantity(
         "divide.error_stated",
         "setup",

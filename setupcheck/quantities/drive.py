@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 import math
-from dataclasses import dataclass
 
 from setupcheck.jobfile.models import Cutter, Dimension, Toothing
 from setupcheck.jobfile.names import Ref
@@ -11,13 +10,14 @@ from setupcheck.jobfile.setups import Cut
 from setupcheck.quantities.book import Open
 from setupcheck.quantities.joint_shape import cut_of, touched_diameter
 from setupcheck.quantities.shop import Floor
+from setupcheck.record import record
 from setupcheck.worm.geometry import lead_angle
 
 NEARLY_ZA = math.radians(5.0)
 """Lead angle up to which other profiles pass for ZA: they differ by microns. Source: derived for small modules (from memory)."""
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Drive:
     """Worm and wheel with everything the formulas ask for.
 
@@ -91,7 +91,7 @@ def middle(given: Dimension) -> float:
     return given.value + ((given.lower or 0.0) + (given.upper or 0.0)) / 2.0
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class WheelCut:
     """The cut that makes the wheel's gaps, by a cutter with one point.
 

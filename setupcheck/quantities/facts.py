@@ -2,27 +2,34 @@
 
 from __future__ import annotations
 
-import re
-from dataclasses import dataclass
-
+from setupcheck.jobfile.models import Flat, Round
 from setupcheck.jobfile.names import Ref
-from setupcheck.jobfile.setups import Setup
-from setupcheck.quantities.book import Scope
+from setupcheck.jobfile.setups import Heat, Join, Setup
+from setupcheck.quantities.book import Open, Scope
+from setupcheck.quantities.contents import breaks, holds, material_family
+from setupcheck.quantities.joining import heat_error
+from setupcheck.quantities.readings import Reading
 from setupcheck.quantities.requirements import Stack, spoken
 from setupcheck.quantities.route import machine_of
 from setupcheck.quantities.scopes import CutEntry, HoldEntry
-from setupcheck.quantities.shop import Floor
+from setupcheck.quantities.shop import Floor, outline
+from setupcheck.quantities.stuff import cap_of, material_of
+from setupcheck.record import record
 
-FAMILIES = (
-    ("copper-alloy", r"cu|cc\d|c[1-9]\d{4}|bronze|brass|gunmetal|rg\d|sae 6\d"),
-    ("cast-iron", r"gg|gj|jl|jm|js|cast.?iron|gr[ea]y.?iron"),
-    ("aluminium", r"al|aw|[2-7]\d{3}(-t\d|$)"),
-    ("steel", r"\d|steel|c\d\d?\b|s\d{3}|x\d"),
-)
-"""How names of materials begin, and what they are: EN, UNS and trade names. Source: common designations, from memory."""
+HOT = 58.0
+"""degC from which bare metal burns within seconds. Source: 58 to 60 degC at five seconds' touch (ISO 13732-1 and ASTM C1055
+from memory, scope pages opened; a hot-surface page has 60); the stricter is taken."""
+DEEP_COLD = -50.0
+"""degC below which plain and hardened steel may crack without bending. Source: our screening choice."""
+_TOUCH = 1e-6
+"""mm within which two surfaces end at one height."""
+COLD_BELOW = 10.0
+"""Kelvin under the room from which a shaft counts as chilled. Source: our screening choice."""
+CHILLED_TO = {"dry-ice": -78.5, "liquid-nitrogen": -196.0}
+"""degC that a part comes to where no temperature is stated. Source: sublimation and boiling point, published (pages opened)."""
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class UnknownFact:
     """A fact the job could state and does not; `path` is the key to fill."""
 
@@ -32,22 +39,14 @@ class UnknownFact:
 Fact = str | int | float | bool | UnknownFact | None
 
 
-def material_family(material: str) -> str:
-    """copper-alloy, steel, cast-iron, aluminium or other, from the name of a material.
-
-    >>> [material_family(name) for name in ("CuSn12-C", "C93200", "CC483K", "42CrMo4", "C45", "EN-GJL-250", "6082-T6")]
-    ['copper-alloy', 'copper-alloy', 'copper-alloy', 'steel', 'steel', 'cast-iron', 'aluminium']
-    """
-    name = re.sub(r"^en[- ]?", "", material.strip().lower())
-    return next((family for family, begins in FAMILIES if re.match(begins, name)), "other")
-
-
 def facts_of(floor: Floor, scope: Scope, name: str) -> Fact:
     """The answer to one fact at one instance; None where this kind of thing has no such fact."""
     family, _, field = name.partition(".")
     setup = next((s.node for s in scope.outward() if isinstance(s.node, Setup)), None)
     match family:
         case "job":
+            if field == "has_mesh":
+                return floor.loaded.job.mesh is not None
             return any(s.kind == "teeth" for p in floor.loaded.job.parts.values() for s in p.surfaces.values())
         case "instance":
             return _called(scope, field)
@@ -71,16 +70,91 @@ def facts_of(floor: Floor, scope: Scope, name: str) -> Fact:
         return setup.head is not None and setup.head.tilt != 0.0
     if name == "divide.by":
         return setup.divide.by if setup.divide is not None else None
-    if setup.join is None:
+    return _joint_fact(floor, setup, setup.join, name) if setup.join is not None else None
+
+
+def _joint_fact(floor: Floor, setup: Setup, join: Join, name: str) -> Fact:
+    path = f"setups.{setup.op}.join"
+    match name:
+        case "join.by":
+            return join.by
+        case "join.joint":
+            return join.joint if join.joint is not None else UnknownFact(f"{path}.joint")
+        case "hub.may_trap":
+            return _may_trap(floor, join)
+        case "hub.brittle":
+            return _breaks(floor, floor.loaded.ref(join.outer).part)
+        case "join.brittle":
+            both = [_breaks(floor, floor.loaded.ref(text).part) for text in (join.outer, join.inner)]
+            return True if True in both else next((b for b in both if isinstance(b, UnknownFact)), False)
+        case "shaft.material_family":
+            inner = floor.loaded.ref(join.inner).part
+            called = floor.loaded.job.parts[inner].material
+            return material_family(called) if called is not None else UnknownFact(f"parts.{inner}.material")
+    return _heat_fact(floor, join, name, f"{path}.heat")
+
+
+def _heat_fact(floor: Floor, join: Join, name: str, path: str) -> Fact:
+    """What is planned of heat and cold. A shrink fit without `heat` has it unstated; another joint without has none."""
+    heat = join.heat
+    if heat is None and join.by != "shrink":
         return None
-    if name == "join.by":
-        return setup.join.by
-    if name == "heat.by":
-        heat = setup.join.heat
-        if heat is None and setup.join.by != "shrink":
-            return None
-        return heat.by if heat is not None and heat.by is not None else UnknownFact(f"{path}.join.heat.by")
+    heat = heat if heat is not None else Heat()
+    chilled = heat.shaft is not None and heat.shaft < floor.loaded.job.room - COLD_BELOW
+    match name:
+        case "heat.by":
+            return heat.by if heat.by is not None else UnknownFact(f"{path}.by")
+        case "heat.hot":
+            found = heat_error(heat)
+            hottest = heat.hub + (found[0] if found is not None else 0.0) if heat.hub is not None else None
+            return hottest >= HOT if hottest is not None else UnknownFact(f"{path}.hub")
+        case "heat.above_cap":
+            return _above_cap(floor, join, heat, path)
+        case "heat.cold_by":
+            return heat.cold_by if heat.cold_by is not None else UnknownFact(f"{path}.cold_by") if chilled else None
+        case "heat.deep_cold":
+            if heat.cold_by is None and heat.shaft is None:
+                return False
+            coldest = heat.shaft if heat.shaft is not None else CHILLED_TO.get(heat.cold_by or "")
+            return coldest < DEEP_COLD if coldest is not None else UnknownFact(f"{path}.shaft")
     return None
+
+
+def _above_cap(floor: Floor, join: Join, heat: Heat, path: str) -> Fact:
+    """Whether the hub may come above what its material stands: planned heat and error of the heat source over its cap."""
+    part = floor.loaded.ref(join.outer).part
+    if heat.hub is None:
+        return UnknownFact(f"{path}.hub")
+    error = heat_error(heat)
+    if error is None:
+        return UnknownFact(f"{path}.oven_error")
+    found = material_of(floor, part)
+    if isinstance(found, Open):
+        return UnknownFact(found.missing[0])
+    return heat.hub + error[0] > cap_of(floor, part, found)
+
+
+def _may_trap(floor: Floor, join: Join) -> bool:
+    """Whether a hub may shut in air or a liquid: its bore ends inside it, or it has holes or threads besides."""
+    ref = floor.loaded.ref(join.outer)
+    surfaces = {n: s for n, s in floor.loaded.job.parts[ref.part].surfaces.items() if s.made != "stock"}
+    if any(s.kind in ("holes", "thread") for n, s in surfaces.items() if n != ref.surface):
+        return True
+    if not any(isinstance(s, Round | Flat) for n, s in surfaces.items() if n != ref.surface):
+        surfaces = dict(floor.loaded.job.parts[ref.part].surfaces)  # a hub bought as it is: its stock is its shape
+    elif ref.surface not in surfaces:
+        surfaces[ref.surface] = floor.loaded.job.parts[ref.part].surfaces[ref.surface]
+    shapes = [outline(s) for s in surfaces.values() if isinstance(s, Round | Flat)]
+    open_to = min(s.low for s in shapes)
+    for bore in sorted((s for s in shapes if s.kind in ("bore", "taper", "thread")), key=lambda s: s.low):
+        if bore.low <= open_to + _TOUCH:
+            open_to = max(open_to, bore.high)
+    return open_to < max(s.high for s in shapes) - _TOUCH
+
+
+def _breaks(floor: Floor, part: str) -> bool | UnknownFact:
+    found = material_of(floor, part)
+    return UnknownFact(found.missing[0]) if isinstance(found, Open) else breaks(found)
 
 
 def _called(scope: Scope, field: str) -> str | None:
@@ -92,6 +166,8 @@ def _called(scope: Scope, field: str) -> str | None:
         return (
             node.entry.on if field == "surface" else f"op {scope.op}, {node.step.replace('_', ' ')} on {node.entry.on}"
         )
+    if isinstance(node, Reading):
+        return node.name
     if isinstance(node, CutEntry):
         return node.name
     return None
@@ -121,10 +197,23 @@ def _surface_fact(floor: Floor, scope: Scope, setup: Setup | None, name: str) ->
             parts = [floor.loaded.ref(setup.join.outer).part]
     if not parts:
         return None
-    material = floor.loaded.job.parts[parts[0]].material
-    if material is None:
+    called = floor.loaded.job.parts[parts[0]].material
+    if called is None:
         return UnknownFact(f"parts.{parts[0]}.material")
-    return material if name == "part.material" else material_family(material)
+    if name == "part.material":
+        return called
+    if name == "part.material_family":
+        return material_family(called)
+    found = _content(called, name.removeprefix("part."))
+    return found if found is not None else UnknownFact(f"parts.{parts[0]}.material")
+
+
+def _content(called: str, of: str) -> bool | None:
+    """Whether a material may hold `lead`, `zinc` or `beryllium`, or (`fume`) any of them."""
+    held = {"lead": holds(called, "lead"), "zinc": holds(called, "zinc"), "beryllium": holds(called, "beryllium")}
+    if of in held:
+        return held[of]
+    return True if True in held.values() else None if None in held.values() else False
 
 
 def _hold_fact(floor: Floor, scope: Scope, setup: Setup | None, field: str) -> Fact:
@@ -150,8 +239,15 @@ def _cut_fact(floor: Floor, scope: Scope, setup: Setup | None, name: str) -> Fac
     if name == "cut.kind":
         ref = floor.loaded.ref(scope.node.name, setup.part)
         return floor.loaded.job.parts[ref.part].surfaces[ref.surface].kind
-    if cut.cutter is not None:
-        return floor.loaded.job.cutters[cut.cutter].kind
+    cutter = floor.loaded.job.cutters[cut.cutter] if cut.cutter is not None else None
+    if name == "cutter.insert":
+        return cutter.insert is not None if cutter is not None else None
     _, machine = machine_of(floor.loaded, setup)
+    if name == "cut.grinds":
+        if cutter is not None and cutter.kind == "grinding-wheel":
+            return True
+        return machine.kind == "grinder" if machine is not None else UnknownFact(f"setups.{setup.op}.machine")
+    if cutter is not None:
+        return cutter.kind
     turns_a_cutter = machine is not None and machine.kind in ("dividing-head", "rotary-table", "mill", "jig-borer")
     return UnknownFact(f"setups.{setup.op}.cut.{scope.node.name}.cutter") if turns_a_cutter else None

@@ -2,17 +2,17 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
 from functools import cache
 
 from setupcheck.errors import SetupcheckError
+from setupcheck.record import record
 from setupcheck.shipped import shipped
 from setupcheck.yamlfile import parse, read_text
 
 FILE = "rules/data/friction.yaml"
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Friction:
     """Lowest friction that a joint may have when it slips, highest when it is pressed in; how good, and what it says."""
 

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import math
 from collections.abc import Callable, Sequence
-from dataclasses import dataclass, fields, replace
+from dataclasses import fields, replace
 
 from setupcheck.jobfile.models import Deviation
 from setupcheck.ledger.account import Account
@@ -14,12 +14,13 @@ from setupcheck.quantities.book import Scope
 from setupcheck.quantities.causes import kept_key
 from setupcheck.quantities.judged import Result
 from setupcheck.quantities.scopes import HoldEntry
+from setupcheck.record import record
 
 FINE, COARSE, FINE_BELOW = 0.0001, 0.001, 0.010
 """Gates are rounded down to 0.1 um below 10 um, to whole um above [mm]. Source: our screening choice."""
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Gate:
     """The largest dial reading a hold may show so that every requirement is still met at its worst.
 

@@ -2,13 +2,16 @@
 
 from __future__ import annotations
 
-from setupcheck.jobfile.setups import Setup
+from setupcheck.jobfile.setups import Centre, Setup
 from setupcheck.quantities.book import Open
 from setupcheck.quantities.judged import Result
 from setupcheck.quantities.route import machine_of
 from setupcheck.quantities.scopes import HoldEntry
 from setupcheck.quantities.shop import Floor
-from setupcheck.quantities.typical import typical
+from setupcheck.quantities.typical import typical, typical_length
+
+HELD_AT_ONE_END = ("three-jaw", "four-jaw", "soft-jaws", "shimmed-jaws", "collet", "pot-chuck")
+"""Devices that carry a part by one end. Source: common practice."""
 
 
 def datum_state(floor: Floor, key: str) -> str | None:
@@ -39,7 +42,7 @@ def error_stated(entry: HoldEntry, key: str) -> str | Open:
     if given.at_most is not None:
         return "stated"
     device = given.device or str(getattr(entry.entry, "by", ""))
-    if typical(device, entry.key) is None:
+    if (typical_length(device) if entry.key == "error" else typical(device, entry.key)) is None:
         return Open((f"{path}.at_most",), f"no typical value is known for {device}")
     return "typical"
 
@@ -113,6 +116,43 @@ def reach(floor: Floor, key: str) -> float | None:
     return None
 
 
+def overhang(floor: Floor, key: str, entry: HoldEntry) -> float | None:
+    """How far a part held at one end stands out towards the tool, in diameters of the surface it is held on.
+
+    From the end of the grip (or from `at`) to the farthest surface there by then; from the far end of the held surface
+    where neither is stated.  None unless jaws or a collet hold it alone.  Source: geometry on the drawing.
+    """
+    op = int(key.partition("/")[0])
+    setup = next(s for s in floor.loaded.job.setups if s.op == op)
+    held, hold = entry.entry, setup.hold
+    if entry.step != "centre" or not isinstance(held, Centre) or hold is None or held.by not in HELD_AT_ONE_END:
+        return None
+    second = hold.and_centre
+    if held.through or (second is not None and second.by not in HELD_AT_ONE_END):
+        return None
+    ref = floor.loaded.ref(
+        held.on, floor.part_of[op] if held.on in floor.loaded.surfaces()[floor.part_of[op]] else None
+    )
+    there = [
+        s
+        for place, states in floor.body(ref.part).states.items()
+        for s in states
+        if (s.op or 0) <= op and floor.removed.get(place, op) >= op
+    ]
+    datum = next((s for s in reversed(there) if (s.part, s.name) == (ref.part, ref.surface)), None)
+    if datum is None or datum.diameter is None:
+        return None
+    way = (setup.looks_at_tool or 1) * floor.sense(ref.part)
+    if held.grip is not None:
+        grip = max(way * floor.z(ref.part, held.grip.low), way * floor.z(ref.part, held.grip.high))
+    elif held.at is not None:
+        grip = way * floor.z(ref.part, held.at)
+    else:
+        grip = min(way * datum.low, way * datum.high)
+    farthest = max(max(way * s.low, way * s.high) for s in there)
+    return max(farthest - grip, 0.0) / datum.diameter
+
+
 def machine_error_stated(floor: Floor, setup: Setup) -> str | Open | None:
     """stated or typical for the machine's own axis; Open where no machine is named. Source: the job file."""
     if setup.join is not None:
@@ -124,21 +164,3 @@ def machine_error_stated(floor: Floor, setup: Setup) -> str | Open | None:
     if given is not None and (given.at_most is not None or given.measured is not None):
         return "stated"
     return "typical" if typical(machine.kind, "axis") is not None else Open((f"machines.{name}.axis_runout",))
-
-
-def nominal_gap(floor: Floor) -> float | Open | None:
-    """How far the drawn sizes alone leave the tooth mid-plane from the worm's axis [mm], without any error.
-
-    |z_teeth - (z_face + facing L)| with all shims at their middle sizes.  Source: arithmetic on the drawing.
-    """
-    job = floor.loaded.job
-    if job.place is None or job.place.worm_axis is None or job.mesh is None:
-        return None
-    teeth, face = floor.now(floor.loaded.ref(job.mesh.wheel)), floor.now(floor.loaded.ref(job.place.worm_axis.from_))
-    if teeth is None or face is None:
-        return Open(("mesh.wheel" if teeth is None else "place.worm_axis.from",), "it is never made in this route")
-    if floor.body(teeth.part) is not floor.body(face.part):
-        return Open(("setups",), f"{teeth.ref} and {face.ref} are never joined in this route")
-    length = job.place.worm_axis.length
-    middle = length.value + ((length.lower or 0.0) + (length.upper or 0.0)) / 2.0
-    return abs(teeth.z - face.z - face.facing * middle)

@@ -2,18 +2,19 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
-
 from setupcheck.jobfile.models import Dimension, Round
 from setupcheck.jobfile.names import Ref
-from setupcheck.jobfile.setups import Join
+from setupcheck.jobfile.setups import Heat, Join
 from setupcheck.ledger.account import Account
 from setupcheck.ledger.causes import Cause
-from setupcheck.quantities.book import Open, OutOfRange, Quantity
+from setupcheck.quantities.book import Known, Open, OutOfRange, Quantity
 from setupcheck.quantities.shop import Floor
+from setupcheck.quantities.sized import at_reference
+from setupcheck.quantities.typical import typical
+from setupcheck.record import record
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class JointSizes:
     """Smallest and largest diameters of both surfaces of a joint [mm], and the nominal one."""
 
@@ -24,15 +25,16 @@ class JointSizes:
     journal_high: float
 
 
-def limits_of(given: Dimension, path: str) -> tuple[float, float] | Open:
-    """Smallest and largest size [mm]: as measured, by its limits, or by its ISO 286 class.
+def limits_of(given: Dimension, path: str, floor: Floor) -> tuple[float, float] | Open:
+    """Smallest and largest size [mm]: as measured (brought back to 20 degC), by its limits, or by its ISO 286 class.
 
     Source: the job file; ISO 286 tables in rules/data (each row with its own source).
     """
     if given.measured is not None:
         if given.uncertainty is None:
             return Open((f"{path}.uncertainty",))
-        return given.measured - given.uncertainty, given.measured + given.uncertainty
+        cold = at_reference(given, path, floor)
+        return cold if isinstance(cold, Open) else (cold[0] - given.uncertainty, cold[1] + given.uncertainty)
     assert given.nominal is not None
     if given.lower is not None or given.upper is not None:
         return given.nominal + (given.lower or 0.0), given.nominal + (given.upper or 0.0)
@@ -55,7 +57,7 @@ def sizes(floor: Floor, join: Join) -> JointSizes | Open | None:
         if node is None:
             return None
         nominal = nominal or node.diameter.value
-        limits = limits_of(node.diameter, f"parts.{ref.part}.surfaces.{ref.surface}.diameter")
+        limits = limits_of(node.diameter, f"parts.{ref.part}.surfaces.{ref.surface}.diameter", floor)
         if isinstance(limits, Open):
             opened.append(limits)
         else:
@@ -154,27 +156,50 @@ def needed(floor: Floor, join: Join, most: float, sizes: JointSizes) -> float | 
         raise OutOfRange(str(why)) from None
 
 
-def _planned(join: Join, op: int) -> tuple[float, float] | Open | None:
+def heat_error(heat: Heat) -> tuple[float, str] | None:
+    """Error of the heat source [K] and the typical value it rests on ("" where it is stated); None where neither is known.
+
+    Source: the job file; rules/data/typical.yaml.
+    """
+    if heat.oven_error is not None:
+        return heat.oven_error, ""
+    row = typical(heat.by, "temperature_error") if heat.by is not None else None
+    return (row.value, row.name) if row is not None else None
+
+
+def _planned(join: Join, op: int, way: float) -> Known | Open | None:
+    """Planned heat with the error of its source taken one way [degC]: -1 the least, +1 the most."""
     if join.by != "shrink":
         return None
-    path = f"setups.{op}.join.heat"
-    heat = join.heat
-    missing = tuple(f"{path}.{key}" for key in ("hub", "oven_error") if heat is None or getattr(heat, key) is None)
-    if missing or heat is None or heat.hub is None or heat.oven_error is None:
-        return Open(missing)
-    return heat.hub, heat.oven_error
+    path, heat = f"setups.{op}.join.heat", join.heat if join.heat is not None else Heat()
+    error = heat_error(heat)
+    if heat.hub is None or error is None:
+        return Open((f"{path}.hub",) * (heat.hub is None) + (f"{path}.oven_error",) * (error is None))
+    return Known(heat.hub + way * error[0], frozenset({error[1]} - {""}))
 
 
-def planned_low(join: Join, op: int) -> float | Open | None:
-    """Planned heat less the error of the oven [degC]; what is lost on the way is not taken off. Source: the job file."""
-    found = _planned(join, op)
-    return found[0] - found[1] if isinstance(found, tuple) else found
+def planned_low(join: Join, op: int) -> Known | Open | None:
+    """Planned heat less the error of the oven [degC]; what is lost on the way is not taken off.
+
+    Source: the job file; a typical error of the heat source where none is stated.
+    """
+    return _planned(join, op, -1.0)
 
 
-def planned_high(join: Join, op: int) -> float | Open | None:
-    """Planned heat and the error of the oven [degC]. Source: the job file."""
-    found = _planned(join, op)
-    return found[0] + found[1] if isinstance(found, tuple) else found
+def planned_high(join: Join, op: int) -> Known | Open | None:
+    """Planned heat and the error of the oven [degC].
+
+    Source: the job file; a typical error of the heat source where none is stated.
+    """
+    return _planned(join, op, +1.0)
+
+
+def kind_of_error(join: Join, planned: float) -> str:
+    """stated or typical, of a heat source's error that is not missing (a missing one has its own finding).
+
+    Source: the job file.
+    """
+    return "stated" if join.heat is not None and join.heat.oven_error is not None else "typical"
 
 
 def cap(floor: Floor, join: Join) -> float | Open | None:
@@ -202,6 +227,15 @@ JOINING = (
     ),
     Quantity(
         "heat.planned_high", "join", "degC", 0, planned_high, {"join": ":", "op": "@op"}, "most heat the plan gives"
+    ),
+    Quantity(
+        "heat.error_kind",
+        "join",
+        "",
+        0,
+        kind_of_error,
+        {"join": ":", "planned": "settled heat.planned_low"},
+        "how good the heat source's error is known, where it is known at all",
     ),
     Quantity("heat.cap", "join", "degC", 0, cap, _HERE, "heat the hub's material stands"),
 )

@@ -65,9 +65,9 @@ def at_shaft(planned: float, loss: float) -> float:
     return lowest_hub_temperature(planned, oven_error=0.0, carry_loss=loss)
 
 
-def spare(at_shaft: float, needed: float) -> float:
-    """What the hub has above its need as it goes over the shaft [K]. Source: arithmetic."""
-    return at_shaft - needed
+def spare(at_shaft: float, needed: float) -> float | None:
+    """What the hub has above its need as it goes over the shaft [K]; None where it has not enough. Source: arithmetic."""
+    return at_shaft - needed if at_shaft >= needed else None
 
 
 def window(floor: Floor, join: Join, pair: Pair, sizes: JointSizes, at_shaft: float, needed: float) -> float | None:

@@ -4,19 +4,19 @@ from __future__ import annotations
 
 import itertools
 from collections.abc import Iterator
-from dataclasses import dataclass
 
 from setupcheck.jobfile.models import Flat, Round, Surface, Throat, Toothing
 from setupcheck.jobfile.names import Ref
 from setupcheck.jobfile.setups import Cut, Join
 from setupcheck.quantities.book import Open
 from setupcheck.quantities.shop import Floor
+from setupcheck.record import record
 
 DEDENDUM = 1.25
 """Depth of a gap below its pitch circle, in modules, where no cut says it. Source: ISO 53 (from memory)."""
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Section:
     """A stretch of the joint with constant section: its length, what carries hoop stress, the hole in the shaft [mm].
 
@@ -62,7 +62,7 @@ def sections(floor: Floor, join: Join) -> tuple[Section, ...] | Open | None:
     return filled
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class _Stretch:
     low: float
     high: float
@@ -159,7 +159,7 @@ def _faces(floor: Floor, part: str) -> list[tuple[float, float]]:
     ]
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class _Raw:
     length: float
     outside: float | None

@@ -2,10 +2,6 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterable
-from dataclasses import dataclass
-
-from setupcheck.ledger.causes import Cause
 from setupcheck.ledger.combine import Combined, Draws, combine
 from setupcheck.ledger.figures import Figure
 from setupcheck.quantities.book import Known, Open
@@ -14,12 +10,13 @@ from setupcheck.quantities.requirements import Stack
 from setupcheck.quantities.scopes import CutEntry
 from setupcheck.quantities.shop import Floor
 from setupcheck.quantities.stacks import build, stock_left
+from setupcheck.record import record
 
 THINNEST_CUT = 0.02
 """Radial stock a turning tool still cuts rather than rubs [mm]. Source: our screening choice; say `finishing_cut` at the cut."""
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Result:
     """One stack, combined: what rules, gates and remedies look at."""
 
@@ -70,28 +67,32 @@ def requirements(floor: Floor) -> float | None:
     return float(len(job.require)) if toothed or joined else None
 
 
-def built(floor: Floor, stack: Stack) -> Built | Open:
+def _known(built: Built | Open) -> Known | Open:
+    """A figure with the typical values that the causes behind it were made with."""
+    if isinstance(built, Open):
+        return built
+    causes = [push.cause for push in built.figure.pushes()]
+    return Known(
+        built, frozenset(c.rests_on for one in causes for c in (one.of.origins() if one.of else (one,))) - {""}
+    )
+
+
+def built(floor: Floor, stack: Stack) -> Known | Open:
     """The figure a requirement asks for, from the accounts of both surfaces; open with what is missing.
 
     relation of G about R = account of G - account of R at the same height.  Source: derived here (design of the ledger).
     """
-    return build(floor, stack)
+    return _known(build(floor, stack))
 
 
-def combined(built: Built, stack: Stack, floor: Floor, draws: Draws) -> Known:
+def combined(built: Built, stack: Stack, floor: Floor, draws: Draws) -> Result:
     """Worst case |sum of known vectors| + sum |coefficient| bound; rss; likely value and chance by Monte Carlo.
-
-    The typical values among its causes go with it, so that every finding on it tells what it rests on.
 
     Source: worst case and rss common practice; Monte Carlo JCGM 101:2008.
     """
     job = floor.loaded.job
     found = combine(built.figure, draws, low=stack.low, high=stack.high, confidence=job.confidence)
-    return Known(Result(stack, found, built.figure), _typical(s.cause for s in found.shares if s.worst > 0.0))
-
-
-def _typical(causes: Iterable[Cause]) -> frozenset[str]:
-    return frozenset(cause.rests_on for cause in causes if cause.rests_on)
+    return Result(stack, found, built.figure)
 
 
 def worst(result: Result) -> float | None:
@@ -149,19 +150,17 @@ def second_order(built: Built, stack: Stack) -> float | None:
     return built.second_order / scale
 
 
-def stock_built(floor: Floor, key: str) -> Built | Open | None:
+def stock_built(floor: Floor, key: str) -> Known | Open | None:
     """Stock a cut meets: half the difference of diameters (or the axial distance of faces) less the offset of old and new.
 
     leave/2 - e - |t| lever.  Source: geometry, derived here.
     """
-    return stock_left(floor, key) if key in floor.stock else None
+    return _known(stock_left(floor, key)) if key in floor.stock else None
 
 
-def least_stock(built: Built, entry: CutEntry) -> Known:
+def least_stock(built: Built, entry: CutEntry) -> float:
     """Worst-case stock at the thinnest place, form error of the old surface taken off. Source: geometry, derived here."""
-    pushes = built.figure.pushes()
-    least = built.figure.base() - sum(p.down for p in pushes) - (entry.cut.form or 0.0)
-    return Known(least, _typical(p.cause for p in pushes if p.down > 0.0))
+    return built.figure.base() - sum(p.down for p in built.figure.pushes()) - (entry.cut.form or 0.0)
 
 
 def finishing_cut(entry: CutEntry) -> float:

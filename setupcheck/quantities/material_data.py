@@ -3,13 +3,13 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
-from dataclasses import dataclass
 from functools import cache
 from types import MappingProxyType
 
 from setupcheck.errors import SetupcheckError
 from setupcheck.notation import nearest, quoted
 from setupcheck.physics.materials import EVIDENCE, FAMILIES, Material, Range, Value
+from setupcheck.record import record
 from setupcheck.shipped import shipped
 from setupcheck.yamlfile import Data, Path, Tree, parse, read_text
 
@@ -23,7 +23,7 @@ _KEYS = frozenset({
 _NOT_IN_IT = Value(0.0, "from memory", "no addition of it")
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class UnknownMaterial:
     """A name that the list does not have; `nearest` is the known name it most likely means, or None."""
 
@@ -99,7 +99,7 @@ def _wrong(tree: Tree, path: Path, problem: str) -> SetupcheckError:
     return SetupcheckError(f"{tree.file}:{tree.key_place(path).line}  {tree.dotted(path, missing=True)} {problem}")
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class _Row:
     """One entry while it is read."""
 

@@ -2,8 +2,6 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
-
 from setupcheck.jobfile.models import Part, Round
 from setupcheck.jobfile.setups import Join
 from setupcheck.notation import Roughness
@@ -11,12 +9,13 @@ from setupcheck.physics import interference as fits
 from setupcheck.physics.heating import interference_at
 from setupcheck.physics.materials import Material, Question, expansion_for, modulus_for
 from setupcheck.quantities.book import Open, OutOfRange
-from setupcheck.quantities.facts import material_family
+from setupcheck.quantities.contents import material_family
 from setupcheck.quantities.friction import Friction, friction
 from setupcheck.quantities.joining import JointSizes
 from setupcheck.quantities.joint_shape import Section, sections
 from setupcheck.quantities.shop import Floor
 from setupcheck.quantities.stuff import material_of
+from setupcheck.record import record
 
 FITTED = ("shrink", "press")
 """Ways of joining that hold by interference."""
@@ -24,7 +23,7 @@ RZ_PER_RA = 7.0
 """Rz over Ra where only Ra is stated. Source: 4 to 7 for machined surfaces (from memory); the end that loses more."""
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Pair:
     """Both materials of a joint, and its sections."""
 

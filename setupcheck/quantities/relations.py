@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 import math
-from dataclasses import dataclass
 
 from setupcheck.jobfile.names import Ref
 from setupcheck.ledger.account import Account
@@ -12,9 +11,10 @@ from setupcheck.ledger.route import State
 from setupcheck.quantities.book import Open
 from setupcheck.quantities.requirements import Stack
 from setupcheck.quantities.shop import Floor
+from setupcheck.record import record
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Built:
     """A stack's figure, with the levers its first-order treatment rests on.
 

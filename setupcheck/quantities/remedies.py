@@ -4,14 +4,14 @@ from __future__ import annotations
 
 import math
 from collections.abc import Iterator, Mapping
-from dataclasses import dataclass, replace
+from dataclasses import replace
 
 from setupcheck.errors import JobError
 from setupcheck.jobfile.models import Deviation, Dimension
 from setupcheck.jobfile.reading import LoadedJob
 from setupcheck.jobfile.setups import Setup
 from setupcheck.ledger.causes import Cause
-from setupcheck.ledger.figures import Figure
+from setupcheck.ledger.figures import Figure, MidPlane, real_pushes
 from setupcheck.quantities.book import Open
 from setupcheck.quantities.gates import (
     FINE,
@@ -25,15 +25,18 @@ from setupcheck.quantities.gates import (
     worst_excess,
 )
 from setupcheck.quantities.judged import Result
+from setupcheck.quantities.placing import Shim, shim_for
 from setupcheck.quantities.requirements import read_stack
 from setupcheck.quantities.route import walk
+from setupcheck.quantities.shop import Floor
 from setupcheck.quantities.stacks import build
+from setupcheck.record import record
 
 LEAST_KEPT = 0.2
 """Share of a bound that better work leaves when one change is not enough. Source: our screening choice."""
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Change:
     """One entry of the job file and the value that would do.
 
@@ -49,7 +52,7 @@ class Change:
     also: tuple[str, ...] = ()
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Stated:
     """What an entry of the job file says: its value now, the guard its uncertainty adds, and the least it can be."""
 
@@ -94,7 +97,7 @@ def stated(loaded: LoadedJob, path: str) -> Stated | None:
     return None
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Swap:
     """Another datum for one hold: hold operation `op` on `on`, as operation `like` does.
 
@@ -110,18 +113,20 @@ class Swap:
     cures: tuple[int, ...]
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Remedy:
-    """What to change: single entries, or the datum of one hold. Both empty where nothing simple does it."""
+    """What to change: single entries, the datum of one hold, or a shim. All empty where nothing simple does it."""
 
     changes: tuple[Change, ...] = ()
     swap: Swap | None = None
+    shim: Shim | None = None
 
 
-def remedies(loaded: LoadedJob, results: Mapping[str, Result]) -> dict[str, Remedy]:
+def remedies(loaded: LoadedJob, floor: Floor, results: Mapping[str, Result]) -> dict[str, Remedy]:
     """The smallest change for every stack outside its limit, one that serves all of them where they name the same entry.
 
-    In this order: the biggest cause cut back by itself; another datum that the stack already runs through, with the
+    A mid-plane that another shim centres takes that shim.
+    Else in this order: the biggest cause cut back by itself; another datum that the stack already runs through, with the
     dial reading that every requirement then needs; the two biggest causes cut back.  Causes of bought parts are left
     alone.  Source: common practice (the fewest changes first).
     """
@@ -129,18 +134,33 @@ def remedies(loaded: LoadedJob, results: Mapping[str, Result]) -> dict[str, Reme
     found: dict[str, Remedy] = {}
     for key, result in results.items():
         if result.margin is not None and result.margin < 0.0:
-            found[key] = _remedy(loaded, result, trials)
+            found[key] = _remedy(loaded, floor, result, trials)
     least: dict[str, float] = {}
     for one in found.values():
         for change in one.changes:
             least[change.path] = min(change.needed, least.get(change.path, change.needed))
     return {
-        key: Remedy(tuple(replace(c, needed=least[c.path]) for c in one.changes), one.swap)
+        key: replace(one, changes=tuple(replace(c, needed=least[c.path]) for c in one.changes))
         for key, one in found.items()
     }
 
 
-def _remedy(loaded: LoadedJob, result: Result, trials: dict[tuple[int, str], Swap | None]) -> Remedy:
+def _shimmed(floor: Floor, result: Result) -> Shim | None:
+    """The shim that centres a mid-plane, where that alone brings it inside its limit."""
+    figure, stack = result.figure, result.stack
+    if not isinstance(figure, MidPlane) or stack.high is None:
+        return None
+    offset = real_pushes(figure.axial)[0]
+    centred = replace(figure, axial=figure.axial.plus_constant(-offset))
+    if worst_excess(centred, None, stack.high) > 0.0:
+        return None
+    return shim_for(floor, offset)
+
+
+def _remedy(loaded: LoadedJob, floor: Floor, result: Result, trials: dict[tuple[int, str], Swap | None]) -> Remedy:
+    shim = _shimmed(floor, result)
+    if shim is not None:
+        return Remedy(shim=shim)
     one = _cut_back(loaded, result, most=1)
     if one:
         return Remedy(one)

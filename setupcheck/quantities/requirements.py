@@ -2,17 +2,16 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
-
 from setupcheck.jobfile.models import Require
 from setupcheck.jobfile.sense import limit_kind
 from setupcheck.quantities.shop import Floor
+from setupcheck.record import record
 
 OF_THE_WHEEL = ("mid-plane", "backlash", "contact-length", "contact-area")
 """Figures that speak of the mesh's wheel where nothing else is said."""
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Stack:
     """One requirement with its instance name and how it is shown.
 

@@ -2,16 +2,16 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
-
 from setupcheck.jobfile.models import Deviation
 from setupcheck.jobfile.setups import Centre, Clock, Cut, Setup, Square, Stop
 from setupcheck.quantities.book import Scope
+from setupcheck.quantities.readings import readings
 from setupcheck.quantities.requirements import Stack, read_stack
 from setupcheck.quantities.shop import Floor
+from setupcheck.record import record
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class HoldEntry:
     """One entry of a hold: `30/centre`. `error` is its main error entry, None where it has none."""
 
@@ -28,7 +28,7 @@ class HoldEntry:
         return getattr(self.entry, self.key, None)
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class CutEntry:
     """One surface cut in one setup: `30/teeth`."""
 
@@ -37,7 +37,7 @@ class CutEntry:
 
 
 def scopes(floor: Floor) -> list[Scope]:
-    """All scopes: the job, its place, each setup with its hold entries and cuts, each joining, each stack."""
+    """All scopes: the job, its place, setups with their hold entries and cuts, joinings, measured values, stacks."""
     loaded, job = floor.loaded, floor.loaded.job
     whole = Scope("job", "", floor, "", line=1)
     found = [whole]
@@ -47,6 +47,8 @@ def scopes(floor: Floor) -> list[Scope]:
         found.append(Scope("mesh", "", job.mesh, "mesh", line=loaded.line("mesh"), within=(whole,)))
     for setup in job.setups:
         found += _setup_scopes(floor, setup, whole)
+    for read in readings(job):
+        found.append(Scope("reading", read.path, read, read.path, read.op, loaded.line(read.path), (whole,)))
     seen: dict[str, int] = {}
     for i in range(len(job.require)):
         stack = read_stack(floor, i)

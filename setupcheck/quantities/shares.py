@@ -72,7 +72,7 @@ def _size(floor: Floor, ref: Ref) -> Account:
     node = floor.loaded.job.parts[ref.part].surfaces[ref.surface]
     path = f"parts.{ref.part}.surfaces.{ref.surface}.diameter"
     assert isinstance(node, Round)
-    limits = limits_of(node.diameter, path)
+    limits = limits_of(node.diameter, path, floor)
     assert isinstance(limits, tuple)
     low, high = limits
     mode: Mode = "measured" if node.diameter.measured is not None else "planned"

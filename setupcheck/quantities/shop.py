@@ -12,9 +12,10 @@ from setupcheck.ledger import route
 from setupcheck.ledger.causes import Cause
 from setupcheck.ledger.route import Placing, State
 from setupcheck.quantities.causes import Towards
+from setupcheck.record import record
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Datum:
     """How a hold's datum was found: stock, made, rough, not-yet-made, cut-away or same-holding; and by which op."""
 
@@ -93,7 +94,7 @@ class Floor:
         )
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Outline:
     """Nominal shape of a surface: axial extent, diameter, facing, kind."""
 

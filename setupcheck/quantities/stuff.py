@@ -9,7 +9,7 @@ from functools import cache
 from setupcheck.jobfile.models import Part, Properties
 from setupcheck.physics.materials import Material, Range, Value, temper_cap
 from setupcheck.quantities.book import Open
-from setupcheck.quantities.facts import material_family
+from setupcheck.quantities.contents import material_family
 from setupcheck.quantities.material_data import UnknownMaterial, material
 from setupcheck.quantities.shop import Floor
 

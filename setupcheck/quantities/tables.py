@@ -3,14 +3,18 @@
 from __future__ import annotations
 
 from setupcheck.quantities import holds, judged
+from setupcheck.quantities.advice import ADVICE
 from setupcheck.quantities.book import Quantity
+from setupcheck.quantities.clamping import CLAMP
 from setupcheck.quantities.cutter_shape import SHAPE
 from setupcheck.quantities.cutting import CUTTING
 from setupcheck.quantities.division import DIVIDE
 from setupcheck.quantities.head_setting import HEAD
 from setupcheck.quantities.joining import JOINING
 from setupcheck.quantities.joint_heat import HEAT
+from setupcheck.quantities.measuring import MEASURE
 from setupcheck.quantities.meshing import MESHING
+from setupcheck.quantities.placing import PLACE
 from setupcheck.quantities.strength import STRENGTH
 from setupcheck.quantities.tilting import TILT
 
@@ -181,6 +185,15 @@ HOLD = (
         "farthest end of the cut from the nearer centring plane, over the distance of the planes",
     ),
     Quantity(
+        "hold.overhang",
+        "hold",
+        "1",
+        1,
+        holds.overhang,
+        {"floor": "route.floor", "key": "@key", "entry": ":"},
+        "how far the part stands out from where it is held, in its diameters",
+    ),
+    Quantity(
         "machine.error_stated",
         "setup",
         "",
@@ -227,18 +240,6 @@ ALLOW = (
     ),
 )
 
-PLACE = (
-    Quantity(
-        "place.nominal_gap",
-        "place",
-        "um",
-        1,
-        holds.nominal_gap,
-        {"floor": "route.floor"},
-        "how far the drawn sizes alone miss the worm's mid-plane",
-    ),
-)
-
 TABLES: tuple[Quantity, ...] = (
     *ROUTE,
     *STACK,
@@ -254,4 +255,7 @@ TABLES: tuple[Quantity, ...] = (
     *SHAPE,
     *MESHING,
     *PLACE,
+    *ADVICE,
+    *CLAMP,
+    *MEASURE,
 )

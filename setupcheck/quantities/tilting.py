@@ -4,9 +4,10 @@ from __future__ import annotations
 
 from setupcheck.jobfile.reading import LoadedJob
 from setupcheck.jobfile.setups import Setup
-from setupcheck.quantities.book import Open, OutOfRange, Quantity
+from setupcheck.quantities.book import Known, Open, OutOfRange, Quantity
 from setupcheck.quantities.route import machine_of
 from setupcheck.quantities.shop import Floor
+from setupcheck.quantities.typical import head_uncertainty
 
 
 def cuts_the_wheel(loaded: LoadedJob, setup: Setup) -> bool:
@@ -58,12 +59,22 @@ def error(set_angle: float, needed_angle: float) -> float:
     return abs(set_angle - needed_angle)
 
 
-def allowed(floor: Floor, setup: Setup) -> float | Open | None:
-    """How finely the head can be set [rad]: a planned angle may miss the lead angle by no more. Source: the job file."""
+def allowed(floor: Floor, setup: Setup) -> Known | Open | None:
+    """How finely the head can be set [rad]: a planned angle may miss the lead angle by no more.
+
+    Source: the job file; where it names only the way of setting (`by`), the typical value of that way.
+    """
     if not cuts_the_wheel(floor.loaded, setup):
         return None
-    uncertainty = setup.head.uncertainty if setup.head is not None else None
-    return uncertainty if uncertainty is not None else Open((f"setups.{setup.op}.head.uncertainty",))
+    found = head_uncertainty(setup.head) if setup.head is not None else None
+    if found is None:
+        return Open((f"setups.{setup.op}.head.uncertainty",))
+    return Known(found[0], frozenset({found[1]} - {""}))
+
+
+def kind_of_uncertainty(setup: Setup, allowed: float) -> str:
+    """stated or typical, of an uncertainty that is not missing (a missing one has its own finding). Source: the job file."""
+    return "stated" if setup.head is not None and setup.head.uncertainty is not None else "typical"
 
 
 def belongs_to(floor: Floor, set_angle: float, allowed: float) -> str | None:
@@ -182,6 +193,15 @@ TILT = (
         "how far the set angle misses the lead angle",
     ),
     Quantity("tilt.allowed", "setup", "arcmin", 1, allowed, _HERE, "how finely the head can be set"),
+    Quantity(
+        "tilt.uncertainty_kind",
+        "setup",
+        "",
+        0,
+        kind_of_uncertainty,
+        {"setup": ":", "allowed": "settled tilt.allowed"},
+        "how good it is known how finely the head can be set, where it is known at all",
+    ),
     Quantity(
         "tilt.belongs_to",
         "setup",

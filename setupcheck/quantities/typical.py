@@ -1,39 +1,103 @@
-"""Typical errors of devices, for entries that name a device and no value. Lengths mm."""
+"""Typical errors of devices, for entries that name a device or a way of working and no value. mm, rad, K."""
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from collections.abc import Callable, Mapping
 from functools import cache
 
 from setupcheck.errors import SetupcheckError
-from setupcheck.notation import length
+from setupcheck.jobfile.setups import Head
+from setupcheck.notation import NotationError, angle_bound, bound, nearest, temperature_difference
+from setupcheck.record import record
 from setupcheck.shipped import shipped
-from setupcheck.yamlfile import parse, read_text
+from setupcheck.yamlfile import Data, Tree, parse, read_text
+
+FILE = "rules/data/typical.yaml"
+_FORMAT = 2
+_KEYS = ("value", "kind", "note")
+EVIDENCE = ("published", "common practice", "from memory")
+"""How good a typical value is, best first."""
 
 
-@dataclass(frozen=True, slots=True)
+def _length(text: str) -> float:
+    return bound(text, units="mm", unit_needed=True)
+
+
+WHATS: Mapping[str, Callable[[str], float]] = {
+    "runout": _length,
+    "face_runout": _length,
+    "axis": _length,
+    "reading": _length,
+    "touch": _length,
+    "position": _length,
+    "once_per_turn": angle_bound,
+    "once_per_crank": angle_bound,
+    "setting": angle_bound,
+    "tilt": angle_bound,
+    "temperature_error": temperature_difference,
+}
+"""What a typical value may be of, and how it is read: lengths mm, angles rad, differences of temperature K."""
+
+
+@record
 class Typical:
-    """One typical value [mm] and how good it is."""
+    """One typical value [mm, rad or K by what it is of] and how good it is."""
 
-    name: str
+    device: str
+    what: str
     value: float
     kind: str
     note: str
 
+    @property
+    def name(self) -> str:
+        """As findings name it: `four-jaw runout`."""
+        return f"{self.device} {self.what.replace('_', ' ')}"
+
 
 @cache
-def table() -> dict[tuple[str, str], Typical]:
-    """All typical values by (device, what)."""
-    data = parse(read_text(shipped("rules/data/typical.yaml")), "rules/data/typical.yaml").data
-    rows = data.get("values") if isinstance(data, dict) else None
+def table() -> Mapping[tuple[str, str], Typical]:
+    """The shipped typical values by (device, what)."""
+    return read_table(read_text(shipped(FILE)), FILE)
+
+
+def read_table(text: str, file: str) -> dict[tuple[str, str], Typical]:
+    """Typical values of a YAML text: what -> device -> value, kind, note.
+
+    Raises: JobError for broken YAML, SetupcheckError for an entry that is wrong or missing, with its line.
+    """
+    tree = parse(text, file)
+    data = tree.data
+    groups = data.get("values") if isinstance(data, dict) and data.get("format") == _FORMAT else None
+    if not isinstance(groups, dict):
+        raise SetupcheckError(f"{file}: 'format: {_FORMAT}' and a map 'values' are needed")
     found: dict[tuple[str, str], Typical] = {}
-    for row in rows if isinstance(rows, list) else []:
-        if not isinstance(row, dict):
-            raise SetupcheckError("rules/data/typical.yaml has a value that is no map. Install setupcheck again")
-        device, what = str(row["device"]), str(row["what"])
-        value = length(str(row["value"]), units="mm", unit_needed=True)
-        found[device, what] = Typical(f"{device} {what.replace('_', ' ')}", value, str(row["kind"]), str(row["note"]))
+    for what, devices in groups.items():
+        if what not in WHATS:
+            raise _wrong(tree, ("values", what), f"is nothing with a typical value. Nearest: {nearest(what, WHATS)}")
+        if not isinstance(devices, dict):
+            raise _wrong(tree, ("values", what), "is no map of devices")
+        for device, row in devices.items():
+            found[device, what] = _row(tree, device, what, row)
     return found
+
+
+def _row(tree: Tree, device: str, what: str, row: Data) -> Typical:
+    at = ("values", what, device)
+    if not isinstance(row, dict) or any(not isinstance(row.get(key), str) for key in _KEYS) or set(row) - set(_KEYS):
+        raise _wrong(tree, at, f"needs {', '.join(_KEYS)}, each a text, and nothing else")
+    value, kind, note = (str(row[key]) for key in _KEYS)
+    if kind not in EVIDENCE:
+        raise _wrong(tree, (*at, "kind"), f"is none of {', '.join(EVIDENCE)}")
+    try:
+        read = WHATS[what](value)
+    except NotationError as why:
+        raise _wrong(tree, (*at, "value"), f"is no value: {why}") from None
+    return Typical(device, what, read, kind, note)
+
+
+def _wrong(tree: Tree, path: tuple[str | int, ...], problem: str) -> SetupcheckError:
+    return SetupcheckError(f"{tree.file}:{tree.key_place(path).line}  {tree.dotted(path, missing=True)} {problem}")
 
 
 def typical(device: str, what: str) -> Typical | None:
@@ -44,3 +108,16 @@ def typical(device: str, what: str) -> Typical | None:
         if asked == what and (device == kind or device.startswith(kind + "-"))
     ]
     return max(found, key=lambda row: len(row.name), default=None)
+
+
+def typical_length(device: str) -> Typical | None:
+    """The typical error of a length set or read with a device: a position, a touch or a reading."""
+    return next((row for what in ("position", "touch", "reading") if (row := typical(device, what)) is not None), None)
+
+
+def head_uncertainty(head: Head) -> tuple[float, str] | None:
+    """How finely a head can be set [rad] and the typical value that rests on ("" where it is stated); None: not known."""
+    if head.uncertainty is not None:
+        return head.uncertainty, ""
+    row = typical(head.by, "tilt") if head.by is not None else None
+    return (row.value, row.name) if row is not None else None

@@ -70,19 +70,32 @@ def _many(n: int, one: str, more: str) -> str:
 
 
 def _stops(found: Review) -> Iterator[str]:
-    stops = [c for c in found.evaluation.cautions if c.severity == "stop-and-check"]
-    if stops:
+    """Each caution once for all operations where it stands alike."""
+    alike: dict[tuple[str, str], list[CautionLine]] = {}
+    for caution in found.evaluation.cautions:
+        if caution.severity == "stop-and-check":
+            alike.setdefault((caution.id, caution.state), []).append(caution)
+    if alike:
         yield "STOP AND CHECK"
-        for caution in stops:
-            yield from _caution(caution)
+        for same in alike.values():
+            yield from _stop(same)
 
 
-def _caution(caution: CautionLine) -> Iterator[str]:
-    where = f"op {caution.op}" if caution.op is not None else "job"
-    because = f" ({clean(caution.because)})" if caution.because else ""
+def _stop(same: list[CautionLine]) -> Iterator[str]:
+    first = same[0]
+    why = dict.fromkeys(clean(caution.because) for caution in same if caution.because)
+    because = f" ({'; '.join(why)})" if why else ""
     yield from wrap(
-        f"{where}, {caution.id} [{clean(caution.state)}]: {caution.text}{because}", first="  ", rest="      "
+        f"{_where(same)}, {first.id} [{clean(first.state)}]: {first.text}{because}", first="  ", rest="      "
     )
+
+
+def _where(same: list[CautionLine]) -> str:
+    """`op 70`, `op 10 and 20`, `op 10, 20 and 30`; `job` where it is not one operation's."""
+    ops = [str(caution.op) for caution in same if caution.op is not None]
+    if not ops:
+        return "job"
+    return f"op {' and '.join([', '.join(ops[:-1]), ops[-1]] if len(ops) > 1 else ops)}"
 
 
 def _findings(found: Review, everything: bool) -> Iterator[str]:
@@ -99,6 +112,7 @@ def _finding(found: Review, finding: Finding) -> Iterator[str]:
     yield from wrap(head + (f", line {finding.line}" if finding.line else ""), first="  ", rest="        ")
     yield from wrap(clean(finding.message) + "." + _margin(finding), first="      ", rest="      ")
     if finding.verdict == "pass":
+        yield from _rests_on(finding)
         return
     result = found.results.get(finding.key)
     if result is not None and finding.rule.startswith("STACK") and result.combined.shares:
@@ -112,8 +126,7 @@ def _finding(found: Review, finding: Finding) -> Iterator[str]:
             first="      ",
             rest="          ",
         )
-    if finding.rests_on:
-        yield from wrap("Rests on typical values: " + ", ".join(finding.rests_on) + ".", first="      ", rest="      ")
+    yield from _rests_on(finding)
     if finding.house:
         yield from wrap(f"By {clean(finding.house)}", first="      ", rest="      ")
     if finding.waiver:
@@ -122,6 +135,11 @@ def _finding(found: Review, finding: Finding) -> Iterator[str]:
         return
     told = [f"{s.ref}, {s.place} ({s.kind})" if s.place else f"{s.ref} ({s.kind})" for s in finding.sources]
     yield from wrap("Source: " + "; ".join(told), first="      ", rest="          ")
+
+
+def _rests_on(finding: Finding) -> Iterator[str]:
+    if finding.rests_on:
+        yield from wrap("Rests on typical values: " + ", ".join(finding.rests_on) + ".", first="      ", rest="      ")
 
 
 def _margin(finding: Finding) -> str:
@@ -278,8 +296,9 @@ def _cautions(found: Review, everything: bool) -> Iterator[str]:
     ops = list(dict.fromkeys(c.op for c in rest))
     told: set[str] = set()
     for op in ops:
-        mine = [c for c in rest if c.op == op]
-        fresh = [c for c in mine if everything or c.id not in told][: None if everything else CAUTIONS_SHOWN]
+        mine = [c for c in rest if c.op == op and (everything or c.id not in told)]
+        mine.sort(key=lambda c: bool(c.because))  # what is certain first, so that doubts never crowd it out
+        fresh = mine[: None if everything else CAUTIONS_SHOWN]
         for caution in fresh:
             told.add(caution.id)
             also = (
@@ -287,5 +306,13 @@ def _cautions(found: Review, everything: bool) -> Iterator[str]:
                 if not everything
                 else []
             )
-            where = f"op {op}" + (f" (and {', '.join(str(o) for o in also)})" if also else "")
-            yield from wrap(f"{where}: {caution.text}", first="  ", rest="      ")
+            where = _where([caution]) + (f" (and {', '.join(str(o) for o in also)})" if also else "")
+            because = f" ({clean(caution.because)})" if caution.because else ""
+            yield from wrap(f"{where}: {caution.text}{because}", first="  ", rest="      ")
+    left: dict[str, list[CautionLine]] = {}
+    for caution in rest:
+        if caution.id not in told:
+            left.setdefault(caution.id, []).append(caution)
+    if left:
+        named = ", ".join(f"{name} ({_where(same)})" for name, same in left.items())
+        yield from wrap(f"more, printed with --all: {named}", first="  ", rest="      ")

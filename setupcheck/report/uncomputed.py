@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 from collections.abc import Iterator, Mapping, Sequence
-from dataclasses import dataclass
 from itertools import groupby
 
 from pydantic import BaseModel
@@ -13,6 +12,7 @@ from setupcheck.jobfile.reading import LoadedJob
 from setupcheck.jobfile.setups import Setup
 from setupcheck.quantities.pairing import FITTED
 from setupcheck.quantities.tilting import cuts_the_wheel
+from setupcheck.record import record
 from setupcheck.report.written import written
 
 NOT_LOOKED_AT: Mapping[str, Mapping[str, str]] = {
@@ -72,7 +72,7 @@ NOT_LOOKED_AT: Mapping[str, Mapping[str, str]] = {
 """
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Uncomputed:
     """One thing stated and not looked at: its path and line in the job file, whose it is, and what it says."""
 
@@ -99,7 +99,7 @@ def in_lines(found: Sequence[Uncomputed]) -> list[str]:
     return lines
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class _Looked:
     """What of a job the figures and rules do look at, by path: an entry under one of these is not told.
 
@@ -181,9 +181,9 @@ def _all(loaded: LoadedJob) -> Iterator[Uncomputed]:
         yield _one(loaded, "room", "job", "room temperature {said}")
     for name, part in job.parts.items():
         yield from _part(loaded, looked, name, part)
-    for record, path in ((job.worm, "worm"), (job.mesh, "mesh")):
-        if record is not None:
-            yield from _entries(loaded, looked, record, path, path)
+    for part_of_drive, path in ((job.worm, "worm"), (job.mesh, "mesh")):
+        if part_of_drive is not None:
+            yield from _entries(loaded, looked, part_of_drive, path, path)
     for name, cutter in job.cutters.items():
         yield from _entries(loaded, looked, cutter, f"cutters.{name}", f"cutter {name}")
     for name, machine in job.machines.items():

@@ -21,7 +21,10 @@ TO_MIND = "to mind"
 def triggered(
     rulebook: RuleBook, book: Book[S], facts: Facts[S], *, answers: Sequence[Answer] = ()
 ) -> tuple[CautionLine, ...]:
-    """Every caution the job's operations trigger: stop-and-check first, then by operation, then in file order."""
+    """Every caution the job's operations trigger: stop-and-check first, then by operation, then in file order.
+
+    What belongs to the whole job comes last.
+    """
     lines: dict[tuple[str, int | None], CautionLine] = {}
     for caution in rulebook.cautions:
         for at in book.instances(caution.trigger.per):
@@ -43,7 +46,8 @@ def triggered(
     order = {caution.id: number for number, caution in enumerate(rulebook.cautions)}
     return tuple(
         sorted(
-            lines.values(), key=lambda c: (c.severity != "stop-and-check", -1 if c.op is None else c.op, order[c.id])
+            lines.values(),
+            key=lambda c: (c.severity != "stop-and-check", c.op is None, c.op if c.op is not None else 0, order[c.id]),
         )
     )
 

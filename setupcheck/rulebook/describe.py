@@ -155,6 +155,8 @@ def _rule_in_full(rule: Rule, rulebook: RuleBook) -> str:
     if rule.message_when_met:
         lines += _field("if met", rule.message_when_met)
     lines += _field("remedy", rule.remedy)
+    if rule.remedy_from:
+        lines += _field("worked out", f"by {rule.remedy_from}, where the job gives enough")
     lines += _field("why", rule.why)
     for source in rule.sources:
         lines += _field("source", _source(source, rulebook))

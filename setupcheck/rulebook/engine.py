@@ -2,12 +2,11 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
-
+from setupcheck.record import record
 from setupcheck.rulebook.records import Finding, Source, Verdict
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class EngineRule:
     """A check of the engine: id, title, what it gives, and why."""
 

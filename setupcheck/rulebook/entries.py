@@ -3,17 +3,17 @@
 from __future__ import annotations
 
 from collections.abc import Iterable, Iterator
-from dataclasses import dataclass
 from pathlib import Path
 
 from setupcheck.errors import JobError, RuleBookError
 from setupcheck.notation import nearest, plain
+from setupcheck.record import record
 from setupcheck.rulebook.records import Place
 from setupcheck.yamlfile import parse, read_text
 from setupcheck.yamlfile.tree import Data, Node
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Entry:
     """One value of a file with its place; `key` is how it is called in messages."""
 

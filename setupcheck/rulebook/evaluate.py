@@ -3,9 +3,10 @@
 from __future__ import annotations
 
 from collections.abc import Iterable, Sequence
-from dataclasses import dataclass, replace
+from dataclasses import replace
 from typing import TYPE_CHECKING
 
+from setupcheck.record import record
 from setupcheck.rulebook import cautions as safety
 from setupcheck.rulebook.answers import unanswered_entries
 from setupcheck.rulebook.facts import applies
@@ -112,7 +113,8 @@ def _at_instance(
     blank = replace(blank, value=value.value, rests_on=value.rests_on)
     if isinstance(limits, Missing):
         return _open(blank, limits)
-    return _judged(blank, rule, book, facts, at, value=value, limits=limits)
+    judged = _judged(blank, rule, book, facts, at, value=value, limits=limits)
+    return _remedied(judged, rule, book, at)
 
 
 def _judged(
@@ -152,7 +154,7 @@ def _judged(
     return _spoken(blank, rule, judgement.verdict, names, at)
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class _Beside:
     """What a rule reads beside value and limit: the uncertainty of a measured value, the chance of a planned one."""
 
@@ -194,6 +196,14 @@ def _called(facts: Facts[S], at: S, name: str) -> str:
     """What a message calls the instance or its surface; without an answer its key."""
     fact = facts(at, name)
     return fact if isinstance(fact, str) and fact else at.key or at.kind
+
+
+def _remedied(finding: Finding, rule: Rule, book: Book[S], at: S) -> Finding:
+    """What to do with this job's own numbers, where a quantity says it."""
+    if not rule.remedy_from or finding.verdict not in ("warn", "fail"):
+        return finding
+    said = read(book, rule.remedy_from, at)
+    return replace(finding, remedy=said.value) if isinstance(said, Found) and isinstance(said.value, str) else finding
 
 
 def _spoken(blank: Finding, rule: Rule, result: Verdict, names: dict[str, str], at: S) -> Finding:

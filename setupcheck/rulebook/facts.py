@@ -3,16 +3,21 @@
 from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
-from dataclasses import dataclass
 from typing import Literal
 
+from setupcheck.record import record
 from setupcheck.rulebook.needs import Facts, S, Unknown
 from setupcheck.rulebook.records import Condition
 
 FACTS: Mapping[str, str] = {
     "job.has_teeth": "true when a part of the job has teeth",
+    "job.has_mesh": "true when worm and wheel are stated as a mesh",
     "part.material": "material as the job names it",
     "part.material_family": "copper-alloy, steel, cast-iron, aluminium, other",
+    "part.lead": "true when the material may hold 0.1 % lead or more, by the list of materials or by its name",
+    "part.zinc": "true when it may hold 1 % zinc or more",
+    "part.beryllium": "true when it may hold 0.1 % beryllium or more",
+    "part.fume": "true when it may hold any of the three",
     "surface.kind": "cylinder, bore, taper, thread, face, centre, throat, teeth, holes, slot",
     "setup.kind": "cut or join",
     "setup.machine_kind": "lathe, dividing-head, rotary-table, mill, grinder, drill-press, jig-borer, press",
@@ -22,14 +27,25 @@ FACTS: Mapping[str, str] = {
     "divide.by": "hole-circle, direct, vernier, readout, ...",
     "cut.kind": "kind of surface that is cut",
     "cut.state": "rough or finish",
+    "cut.grinds": "true on a grinder or with a grinding wheel",
+    "cutter.insert": "true when the cutter has an insert that is ground for the job",
     "cutter.kind": "single-point, hob, form-cutter, drill, reamer, ...",
     "join.by": "shrink, press, slide, taper, screw, bond",
+    "join.joint": "degreased or oiled",
+    "join.brittle": "true when hub or shaft is of grey iron or hardened steel",
+    "hub.brittle": "true when the hub is",
+    "hub.may_trap": "true when the hub's bore ends inside it, or it has threads or holes",
+    "shaft.material_family": "family of the part that goes in",
     "heat.by": "oven, hot-plate, induction, oil-bath, flame",
+    "heat.hot": "true when the hub is planned at 58 degC or more, the heat source's error counted",
+    "heat.above_cap": "true when it may come above what its material stands",
+    "heat.cold_by": "freezer, dry-ice, liquid-nitrogen",
+    "heat.deep_cold": "true when the shaft is colder than -50 degC",
 }
 """The closed list of facts that rules and cautions may ask for, with their values; looked up outward."""
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Applies:
     """The answer, and for `unknown` the job paths that would settle it."""
 

@@ -4,9 +4,9 @@ from __future__ import annotations
 
 import hashlib
 from collections.abc import Mapping
-from dataclasses import dataclass
 from pathlib import Path
 
+from setupcheck.record import record
 from setupcheck.rulebook.entries import Entry, list_of, open_file
 from setupcheck.rulebook.judging import outside
 from setupcheck.rulebook.needs import Quantity
@@ -15,7 +15,7 @@ from setupcheck.rulebook.units import read_number
 from setupcheck.rulebook.waivers import is_date
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class HouseLimit:
     """One limit of the shop, in base units and as written; when is an ISO date."""
 
@@ -36,7 +36,7 @@ class HouseLimit:
         return f"house limit {self.text} of {house} ({self.who}, {self.when}: {self.why})"
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class House:
     """A house file: the shop's name, its limits, and the sha256 of the file."""
 

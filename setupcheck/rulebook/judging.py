@@ -8,8 +8,8 @@ measurement, far above rounding.
 from __future__ import annotations
 
 import math
-from dataclasses import dataclass
 
+from setupcheck.record import record
 from setupcheck.rulebook.records import Level, Verdict
 
 RELATIVE_TOLERANCE = 1e-9
@@ -20,7 +20,7 @@ GUARD_FACTOR = 1.65
 remembered; from memory, the standard was not opened."""
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Judgement:
     """Verdict, the limit it was held against, and the distance to the nearest limit (positive inside)."""
 

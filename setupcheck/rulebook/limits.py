@@ -2,13 +2,12 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
-
+from setupcheck.record import record
 from setupcheck.rulebook.needs import Book, Missing, S, read
 from setupcheck.rulebook.records import Limit, Number, Requirement
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class LimitValue:
     """A limit in base units, and the typical values it rests on."""
 
@@ -16,7 +15,7 @@ class LimitValue:
     rests_on: tuple[str, ...] = ()
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Limits:
     """Lower and upper limit of one instance, None where there is none."""
 

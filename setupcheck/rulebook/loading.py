@@ -8,11 +8,11 @@ from __future__ import annotations
 import hashlib
 import re
 from collections.abc import Collection, Mapping
-from dataclasses import dataclass
 from pathlib import Path
 from types import MappingProxyType
 from typing import TypeVar
 
+from setupcheck.record import record
 from setupcheck.rulebook.entries import Entry, list_of, open_file
 from setupcheck.rulebook.facts import FACTS
 from setupcheck.rulebook.messages import wrong_fields
@@ -47,13 +47,13 @@ SHAPES = ("at_most", "at_least", "between", "one_of")
 
 _RULE_KEYS = (
     "id", "title", "applies_when", "quantity", "require", "only_warn_if", "uncertainty", "house_may_change", "level",
-    "warn_within", "asks_for", "message", "message_when_met", "remedy", "why", "sources", "cautions",
+    "warn_within", "asks_for", "message", "message_when_met", "remedy", "remedy_from", "why", "sources", "cautions",
 )  # fmt: skip
 _RULE_ID = re.compile(r"([A-Z]+)-([0-9]{3})")
 _CAUTION_ID = re.compile(r"[a-z]+(-[a-z]+)*")
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class _Names:
     """Every name that a rule may use."""
 
@@ -161,6 +161,7 @@ def _rule(entry: Entry, family: str, names: _Names) -> Rule:
         only_warn_if=_softening(softening, names) if softening is not None else None,
         uncertainty=_uncertainty(uncertainty, quantity, names) if uncertainty is not None else "",
         asks_for=asks_for,
+        remedy_from=_words(entry.get("remedy_from"), names),
         cautions=_caution_ids(entry.get("cautions"), names),
     )
 
@@ -206,6 +207,16 @@ def _limit(entry: Entry, quantity: Quantity, names: _Names) -> Limit:
     if times is not None and factor <= 0.0:
         raise times.wrong(f"times {factor:g} turns the limit round", "Write a factor above zero")
     return OfQuantity(other.name, factor)
+
+
+def _words(entry: Entry | None, names: _Names) -> str:
+    """A quantity whose value is words."""
+    if entry is None:
+        return ""
+    quantity = _quantity(entry, names)
+    if quantity.unit != "":
+        raise entry.wrong(f"{quantity.name} counts in {quantity.unit}", "Name a quantity of words")
+    return quantity.name
 
 
 def _softening(entry: Entry, names: _Names) -> Softening:

@@ -8,9 +8,10 @@ from __future__ import annotations
 
 import math
 from collections.abc import Callable, Collection, Mapping, Sequence
-from dataclasses import dataclass
 from numbers import Real
 from typing import Protocol, TypeGuard, TypeVar
+
+from setupcheck.record import record
 
 BY_INSTANCE = "stack"
 """Unit of a quantity whose unit belongs to the instance: one stack counts in um, the next in arcsec."""
@@ -84,7 +85,7 @@ class Book(Protocol[S]):
     def digits(self, name: str, at: S, /) -> int: ...
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Unknown:
     """A fact that the job could state but does not; `path` is the key to fill."""
 
@@ -98,7 +99,7 @@ Facts = Callable[[S, str], Fact]
 """facts(scope, name): the answer for one instance, looked up outward by whoever supplies it."""
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Found:
     """A value ready to judge, number or word."""
 
@@ -106,7 +107,7 @@ class Found:
     rests_on: tuple[str, ...]
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Missing:
     """Why there is nothing to judge."""
 

@@ -9,6 +9,8 @@ from collections.abc import Mapping
 from dataclasses import dataclass
 from typing import Literal
 
+from setupcheck.record import record
+
 FAMILIES = (
     "DATUM", "HOLD", "ALLOW", "STACK", "DIVIDE", "TILT", "CUTTER",
     "INSERT", "MESH", "FIT", "HEAT", "PLACE", "CLAMP", "MEASURE",
@@ -40,7 +42,7 @@ class Place:
     line: int
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Reference:
     """One entry of sources.yaml: a document or a body of experience that rules may cite."""
 
@@ -49,7 +51,7 @@ class Reference:
     note: str = ""
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Source:
     """Where a rule comes from: a reference, the place in it, and how good the evidence is."""
 
@@ -58,7 +60,7 @@ class Source:
     kind: str
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Number:
     """A limit that stands in the rule book, in base units, and as it is written there."""
 
@@ -66,7 +68,7 @@ class Number:
     text: str
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class OfQuantity:
     """A limit that is another quantity of the same instance or of a thing around it, times a factor."""
 
@@ -77,7 +79,7 @@ class OfQuantity:
 Limit = Number | OfQuantity
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Requirement:
     """What is asked of the quantity. `low` and `high` for numbers, `allowed` for words."""
 
@@ -87,7 +89,7 @@ class Requirement:
     allowed: tuple[str, ...] = ()
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class HouseSpan:
     """The span inside which a shop may set its own limit."""
 
@@ -95,7 +97,7 @@ class HouseSpan:
     high: Number
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Softening:
     """A broken limit only warns while `quantity` is at least `at_least`."""
 
@@ -103,7 +105,7 @@ class Softening:
     at_least: Limit
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Condition:
     """One field of `applies_when`: the fact has to be one of the values."""
 
@@ -111,9 +113,12 @@ class Condition:
     values: tuple[str | float | bool, ...]
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Rule:
-    """One rule. It has no scope of its own: it runs once for every instance of its quantity."""
+    """One rule. It has no scope of its own: it runs once for every instance of its quantity.
+
+    remedy_from  a quantity of words that says what to do with this job's numbers; `remedy` where it has no value
+    """
 
     id: str
     family: str
@@ -133,6 +138,7 @@ class Rule:
     only_warn_if: Softening | None = None
     uncertainty: str = ""
     asks_for: str = ""
+    remedy_from: str = ""
     cautions: tuple[str, ...] = ()
 
     @property
@@ -141,7 +147,7 @@ class Rule:
         return max((source.kind for source in self.sources), key=EVIDENCE.index)
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Trigger:
     """What sets a caution off: facts of an instance of one kind and, where given, a number reaching a limit."""
 
@@ -151,7 +157,7 @@ class Trigger:
     at_least: Limit | None = None
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Caution:
     """A safety line that an operation triggers whatever the findings say. It can never be waived or changed."""
 
@@ -163,7 +169,7 @@ class Caution:
     place: Place
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class RuleBook:
     """Everything that was read from the rule files."""
 
@@ -179,7 +185,7 @@ class RuleBook:
         return next((rule for rule in self.rules if rule.id == rule_id), None)
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Waiver:
     """An entry of the job's `waive` list: this finding is accepted, for this reason, until this day.
 
@@ -196,7 +202,7 @@ class Waiver:
     line: int = 0
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Answer:
     """An entry of the job's `checked` list: someone has checked this caution at this operation."""
 
@@ -208,7 +214,7 @@ class Answer:
     line: int = 0
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Finding:
     """A rule's answer at one instance. Numbers are in base units; `unit` and `digits` say how to show them.
 
@@ -246,7 +252,7 @@ class Finding:
     cautions: tuple[str, ...] = ()
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class CautionLine:
     """A caution that an operation has triggered.
 
@@ -268,7 +274,7 @@ class CautionLine:
         return self.state.startswith("checked by ")
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Evaluation:
     """What came out of judging one job.
 

@@ -9,7 +9,8 @@ from __future__ import annotations
 
 import math
 from collections.abc import Callable, Mapping
-from dataclasses import dataclass
+
+from setupcheck.record import record
 
 STEEPEST = math.pi / 4.0
 """Limit taken for lead and pressure angles [rad], both below it. Our screening choice; worms lie far inside."""
@@ -172,7 +173,7 @@ def profile_shift(*, distance: float, axial_module: float, reference_diameter: f
     return shift
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class WormSizes:
     """Tip and root diameter of a worm [mm]."""
 
@@ -180,7 +181,7 @@ class WormSizes:
     root_diameter: float
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class WheelSizes:
     """Diameters of a worm wheel in its mid-plane and the radius of its throat [mm]."""
 
@@ -265,7 +266,7 @@ def fewest_teeth(*, pressure_angle: float, shift: float = 0.0) -> float:
     return 2.0 * (1.0 - shift) / math.sin(pressure_angle) ** 2
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class OverWires:
     """A worm thread measured over three wires: size M, where a wire touches the flanks, and how it swings.
 
@@ -281,7 +282,7 @@ class OverWires:
     wire_diameter: float
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class _Seated:
     """A wire seated in the groove that touches at a chosen radius: the groove it needs, and its axis."""
 

@@ -6,9 +6,9 @@ Directions are the operator's: right, left, up, front (towards him), back, with 
 from __future__ import annotations
 
 import math
-from dataclasses import dataclass
 from typing import Literal
 
+from setupcheck.record import record
 from setupcheck.worm.geometry import above_zero, not_below_zero, steep_enough
 
 Hand = Literal["right", "left"]
@@ -162,7 +162,7 @@ def square_tilt(
     return math.atan(math.tan(lead_angle) * (1.0 + wall * gap_arc / 2.0 * bend))
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class TiltError:
     """Error of the angle between the wheel's axis and the cutter's spindle, part by part [rad].
 
@@ -226,7 +226,7 @@ def twist_over_face(error: float, *, face_width: float) -> float:
     return face_width * math.tan(abs(error))
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Shift:
     """How far tilting carries the wheel's mid-plane [mm].
 

@@ -108,11 +108,11 @@ class _Walk:
             self._count(event)
             self._refuse_extras(event)
             self._scalar(event)
-        elif isinstance(event, yaml.MappingStartEvent | yaml.SequenceStartEvent):
+        elif isinstance(event, yaml.CollectionStartEvent):
             self._count(event)
             self._refuse_extras(event)
             self._open(event)
-        elif isinstance(event, yaml.MappingEndEvent | yaml.SequenceEndEvent):
+        elif isinstance(event, yaml.CollectionEndEvent):
             self._close(event)
         elif isinstance(event, yaml.AliasEvent):
             self._count(event)
@@ -134,7 +134,7 @@ class _Walk:
                 self._broken(event, 3, "a second document begins", "Keep one document in a file")
                 raise _TooMuch
 
-    def _open(self, event: yaml.MappingStartEvent | yaml.SequenceStartEvent) -> None:
+    def _open(self, event: yaml.CollectionStartEvent) -> None:
         if self.stack and self._awaits_key():
             self._broken(event, 1, "a list or map stands where a key must be", "Write a word as the key")
             raise _TooMuch
@@ -149,7 +149,7 @@ class _Walk:
         self.stack.append(_Open(data, node, bool(event.flow_style)))
         self.plain_end = -1
 
-    def _close(self, event: yaml.MappingEndEvent | yaml.SequenceEndEvent) -> None:
+    def _close(self, event: yaml.CollectionEndEvent) -> None:
         closed = self.stack.pop()
         if closed.flow:
             start = closed.node.place
@@ -164,11 +164,11 @@ class _Walk:
     def _scalar(self, event: yaml.ScalarEvent) -> None:
         plain = not event.style
         behind_comma = plain and self._watch_commas(event)  # `5 um` of `2,5 um`: neither a value nor a key of its own
+        place = self._place(event)
         if self.stack and self._awaits_key():
-            self._key(event, plain, behind_comma=behind_comma)
+            self._key(event, place, plain=plain, behind_comma=behind_comma)
             return
         value: Scalar = event.value
-        place = self._place(event)
         if plain:
             known = plain_scalar(event.value)
             if isinstance(known, LookAlike) and not behind_comma:
@@ -179,8 +179,8 @@ class _Walk:
                 place = self.stack[-1].key_place  # nothing is written: show the key
         self._attach(value, Node(place, place))
 
-    def _key(self, event: yaml.ScalarEvent, plain: bool, *, behind_comma: bool) -> None:
-        holder, word, place = self.stack[-1], event.value, self._place(event)
+    def _key(self, event: yaml.ScalarEvent, place: Place, *, plain: bool, behind_comma: bool) -> None:
+        holder, word = self.stack[-1], event.value
         assert isinstance(holder.data, dict) and isinstance(holder.node.inside, dict)
         if not holder.data and not holder.flow:
             if holder.node.key_place == holder.node.place:
@@ -206,7 +206,7 @@ class _Walk:
                 f"the key has more than {limits.LONGEST_KEY} characters",
                 "Write a short name and a colon",
             )
-        elif plain and re.match(r"[A-Za-z_][\w.-]*:[^\s:]", word):
+        elif plain and ":" in word and re.match(r"[A-Za-z_][\w.-]*:[^\s:]", word):
             self._broken(
                 event,
                 place.length,
@@ -253,10 +253,10 @@ class _Walk:
 
         Returns whether this value stands behind such a comma.
         """
-        start, end = _start(event).index, _end(event).index
         if not (self.stack and self.stack[-1].flow and event.value):
             self.plain_end = -1
             return False
+        start, end = _start(event).index, _end(event).index
         comma = start - 1
         text = self.text
         found = self.plain_end == comma and text[comma] == "," and text[comma - 1].isdigit() and text[start].isdigit()
@@ -296,11 +296,11 @@ class _Walk:
 
     def _place(self, event: yaml.Event, length: int | None = None) -> Place:
         start = _start(event)
+        line, column = start.line, start.column
         if length is None:
             end = _end(event)
-            here = end.column if end.line == start.line else len(self.lines[start.line])
-            length = max(1, here - start.column)
-        return Place(start.line + 1, start.column + 1, length)
+            length = (end.column if end.line == line else len(self.lines[line])) - column
+        return Place(line + 1, column + 1, length if length > 1 else 1)
 
     def _path(self) -> Path:
         steps: list[str | int] = []

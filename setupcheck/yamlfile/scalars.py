@@ -8,8 +8,8 @@ from __future__ import annotations
 
 import math
 import re
-from dataclasses import dataclass
 
+from setupcheck.record import record
 from setupcheck.yamlfile.limits import MOST_DIGITS
 
 Scalar = str | int | float | bool | None
@@ -24,7 +24,7 @@ _TRUE = frozenset({"yes", "on", "y", "true"})
 _FALSE = frozenset({"no", "off", "n", "false"})
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class LookAlike:
     """A plain value that looks like a number and is not read as one: what is wrong, what to write."""
 

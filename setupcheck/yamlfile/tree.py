@@ -7,6 +7,7 @@ from dataclasses import dataclass, field
 from typing import TypeAlias
 
 from setupcheck.errors import Problem
+from setupcheck.record import record
 from setupcheck.yamlfile.scalars import Scalar
 
 Data: TypeAlias = "Scalar | list[Data] | dict[str, Data]"
@@ -15,7 +16,7 @@ Path = tuple[str | int, ...]
 NAMED_BY = ("op",)  # an entry of a list is called by its operation number where it has one
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Place:
     """A piece of text: line and column counted from 1, length in characters on that line."""
 
@@ -33,7 +34,7 @@ class Node:
     inside: dict[str, Node] | list[Node] | None = None
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Tree:
     """A file as plain data with places.
 

@@ -146,8 +146,8 @@ SLIPS: dict[tuple[str, str], tuple[Slip, ...]] = {
         Slip(
             PLATE,
             20,
-            "by: soft-jaws, runout: 1 thou}",
-            "by: soft-jaws, runout: {measured: 1 thou, uncertainty: 0.2 thou, high_at: jaw 3}}",
+            "by: soft-jaws, runout: 1 thou,",
+            "by: soft-jaws, runout: {measured: 1 thou, uncertainty: 0.2 thou, high_at: jaw 3},",
         ),
     ),
     ("HOLD-009", "no machine named"): (
@@ -189,7 +189,62 @@ SLIPS: dict[tuple[str, str], tuple[Slip, ...]] = {
         Slip(WHEEL, 40, "passes: [2.0, 1.0, 0.3]", "passes: [2.0, 0.5, 0.8]"),
         Slip(GEAR, 40, "passes: [3.1, 0.3]", "passes: [2.4, 1.0]"),
     ),
-    ("DIVIDE-003", "nothing said of the dividing device"): (
+    ("CLAMP-001", "the jaws catch too little of the part"): (
+        Slip(WHEEL, 10, "grip: {from: -40, to: -5}", "grip: {from: -40, to: -30}"),
+        Slip(PLATE, 20, "grip: {from: 0.15, to: 0.55}", "grip: {from: 0.15, to: 0.3}"),
+    ),
+    ("MEASURE-001", "a measured spindle or face, and nobody says how well"): (
+        Slip(
+            WHEEL,
+            30,
+            "stop:   {on: back, error: 20 um}",
+            "stop:   {on: back, error: {measured: 20 um}}",
+        ),
+        Slip(
+            PLATE,
+            30,
+            "square: {on: back, by: table, face_runout: 0.3 thou, across: 5}",
+            "square: {on: back, by: table, face_runout: {measured: 0.3 thou}, across: 5}",
+        ),
+    ),
+    ("MEASURE-002", "a gauge too coarse for what it has to prove"): (
+        Slip(WHEEL, 50, "measured: 4 um, uncertainty: 1 um", "measured: 4 um, uncertainty: 3 um"),
+        Slip(
+            GEAR,
+            20,
+            "by: expanding-mandrel, runout: 10 um}",
+            "by: expanding-mandrel, runout: {at_most: 10 um, measured: 4 um, uncertainty: 5 um}}",
+        ),
+    ),
+    ("MEASURE-003", "jaws over shims that nobody measured"): (
+        Slip(WHEEL, 20, "by: soft-jaws, at: 12, runout: 20 um}", "by: shimmed-jaws, at: 12, runout: 20 um}"),
+        Slip(PLATE, 20, "by: soft-jaws, runout: 1 thou,", "by: shimmed-jaws, runout: {device: shimmed-jaws},"),
+    ),
+    ("MEASURE-007", "an indicator too coarse for the plan"): (
+        Slip(WHEEL, 40, "rests: pushed, runout: 3 um}", "rests: pushed, runout: {at_most: 3 um, indicator: 10 um}}"),
+        Slip(
+            PLATE,
+            30,
+            "by: indicator, runout: 0.2 thou}",
+            "by: indicator, runout: {at_most: 0.2 thou, indicator: 0.5 thou}}",
+        ),
+    ),
+    ("DIVIDE-003", "a way of dividing without a typical error, and none stated"): (
+        Slip(
+            WHEEL,
+            40,
+            'by: hole-circle, circle: 18, wheel: {once_per_turn: ±10"}, worm: {once_per_crank: ±4"}, setting: 2"}',
+            "by: x-y}",
+        ),
+        Slip(
+            PLATE,
+            30,
+            'divide: {by: rotary-table, wheel: {once_per_turn: ±8"}, worm: {once_per_crank: ±2"}, setting: 2", '
+            'clamp: 1"}',
+            "divide: {by: x-y}",
+        ),
+    ),
+    ("DIVIDE-004", "nothing said of the dividing device but its kind"): (
         Slip(WHEEL, 40, 'wheel: {once_per_turn: ±10"}, worm: {once_per_crank: ±4"}, setting: 2"}', "}"),
         Slip(
             PLATE,
@@ -378,7 +433,7 @@ def test_a_joint_that_will_not_go_on_or_not_hold_is_caught(good: str, bad: str, 
     ("gone", "instead", "key"),
     [
         ("hub: 175 degC, ", "", "setups.70.join.heat.hub"),
-        (" oven_error: 10 degC,", "", "setups.70.join.heat.oven_error"),
+        (" by: oven, oven_error: 10 degC,", "", "setups.70.join.heat.oven_error"),
         ("material: CuSn12-C\n", "\n", "parts.wheel.material"),
         ("material: CuSn12-C\n", "material: unobtainium\n", "parts.wheel.material"),
         ("diameter: 32 H5,", "diameter: 32,", "parts.wheel.surfaces.bore.diameter"),

@@ -108,6 +108,7 @@ def shipped() -> RuleBook:
 
 
 SCOPES = {
+    "job": FakeScope("job"),
     "setup": FakeScope("setup", "30", "setups.30", 30),
     "hold": FakeScope("hold", "30/centre", "setups.30.hold.centre", 30),
     "cut": FakeScope("cut", "30/teeth", "setups.30.cut.teeth", 30),
@@ -122,38 +123,72 @@ OPERATIONS = {
         ["chuck-key-and-jaws", "indicating-out-of-gear", "shims-held-captive", "gloves-near-spindle", "bronze-chips"]),
     "flying teeth on a tilted head": (
         {"setup.kind": "cut", "setup.machine_kind": "dividing-head", "hold.by": "spigot", "head.tilted": True,
-         "cutter.kind": "single-point", "part.material_family": "copper-alloy"},
-        ["fly-cutter-indexing", "fly-cutter-one-screw", "gloves-near-spindle", "bronze-chips", "tilted-head-drops"]),
+         "cutter.kind": "single-point", "cutter.insert": True, "part.material_family": "copper-alloy", "part.lead": True,
+         "cut.kind": "teeth", "job.has_mesh": True},
+        ["fly-cutter-indexing", "fly-cutter-one-screw", "gloves-near-spindle", "bronze-chips", "tilted-head-drops",
+         "carbide-dust", "diamond-on-steel", "sharp-fresh-teeth", "head-lifting", "leaded-alloy-dust",
+         "nip-of-worm-and-wheel"]),
     "turning between centres": (
         {"setup.kind": "cut", "setup.machine_kind": "lathe", "hold.by": "centres", "part.material_family": "steel"},
         ["between-centres", "gloves-near-spindle"]),
     "reaming holes on a rotary table": (
         {"setup.kind": "cut", "setup.machine_kind": "rotary-table", "hold.by": "indicator", "cutter.kind": "reamer",
          "part.material_family": "cast-iron"},
-        ["hands-while-indexing", "drill-and-reamer-chips", "gloves-near-spindle"]),
+        ["hands-while-indexing", "drill-and-reamer-chips", "gloves-near-spindle", "head-lifting"]),
     "boring on a rotary table": (
         {"setup.kind": "cut", "setup.machine_kind": "rotary-table", "cutter.kind": "boring-head",
          "part.material_family": "steel"},
-        ["hands-while-indexing", "gloves-near-spindle"]),
+        ["hands-while-indexing", "gloves-near-spindle", "head-lifting"]),
     "drilling": (
         {"setup.kind": "cut", "setup.machine_kind": "drill-press", "cutter.kind": "drill",
          "part.material_family": "steel"},
         ["drill-and-reamer-chips", "gloves-near-spindle"]),
     "grinding between centres": (
         {"setup.kind": "cut", "setup.machine_kind": "grinder", "hold.by": "taper-mandrel",
-         "cutter.kind": "grinding-wheel", "part.material_family": "steel"},
-        ["between-centres", "grinding-wheel", "grinding-dust-and-coolant", "gloves-near-spindle"]),
+         "cutter.kind": "grinding-wheel", "cut.grinds": True, "cut.kind": "cylinder", "part.material_family": "steel"},
+        ["wheel-overspeed", "between-centres", "grinding-wheel", "grinding-dust-and-coolant", "gloves-near-spindle",
+         "coolant-mist"]),
+    "grinding a face of beryllium copper": (
+        {"setup.kind": "cut", "setup.machine_kind": "grinder", "cut.grinds": True, "cut.kind": "face",
+         "part.material_family": "copper-alloy", "part.beryllium": True, "part.lead": False},
+        ["wheel-overspeed", "side-grinding", "beryllium-copper", "grinding-wheel", "grinding-dust-and-coolant",
+         "gloves-near-spindle", "bronze-chips", "coolant-mist"]),
+    "broaching": (
+        {"setup.kind": "cut", "setup.machine_kind": "press", "cutter.kind": "broach", "part.material_family": "steel"},
+        ["broach-force"]),
     "grinding in a lathe": (
         {"setup.kind": "cut", "setup.machine_kind": "lathe", "hold.by": "spigot", "cutter.kind": "grinding-wheel",
-         "part.material_family": "steel"},
-        ["grinding-wheel-in-a-lathe", "gloves-near-spindle"]),
+         "cut.grinds": True, "cut.kind": "bore", "part.material_family": "steel"},
+        ["wheel-overspeed", "grinding-wheel-in-a-lathe", "gloves-near-spindle", "coolant-mist"]),
     "hobbing": (
         {"setup.kind": "cut", "setup.machine_kind": "mill", "cutter.kind": "hob", "part.material_family": "steel"},
         ["gloves-near-spindle"]),
     "shrinking on": (
-        {"setup.kind": "join", "join.by": "shrink", "heat.by": "oven"},
+        {"setup.kind": "join", "join.by": "shrink", "heat.by": "oven", "heat.hot": True, "join.joint": "oiled"},
         ["glove-heat-rating", "hot-part", "shrink-seized-halfway"]),
+    "shrinking a degreased blind bronze hub on by flame": (
+        {"setup.kind": "join", "join.by": "shrink", "heat.by": "flame", "heat.hot": True, "join.joint": "degreased",
+         "hub.may_trap": True, "part.fume": True, "part.zinc": True, "heat.above_cap": True},
+        ["glove-heat-rating", "open-flame-alloy", "heat-above-cap", "solvent-before-heat", "sealed-cavity-heat",
+         "hot-part", "open-flame-fire", "zinc-fume", "heat-uneven", "shrink-seized-halfway"]),
+    "shrinking an iron hub on from an oil bath": (
+        {"setup.kind": "join", "join.by": "shrink", "heat.by": "oil-bath", "hub.brittle": True},
+        ["glove-heat-rating", "oil-bath-flash-point", "oil-bath-water", "hub-burst", "hot-part",
+         "shrink-seized-halfway"]),
+    "shrinking on by induction and dry ice": (
+        {"setup.kind": "join", "join.by": "shrink", "heat.by": "induction", "heat.cold_by": "dry-ice",
+         "heat.deep_cold": True, "shaft.material_family": "copper-alloy"},
+        ["glove-heat-rating", "dry-ice-room", "hot-part", "heat-uneven", "induction-implant", "cold-part-and-frost",
+         "shrink-seized-halfway"]),
+    "shrinking on from liquid nitrogen": (
+        {"setup.kind": "join", "join.by": "shrink", "heat.by": "oven", "heat.cold_by": "liquid-nitrogen",
+         "heat.deep_cold": True, "shaft.material_family": "steel"},
+        ["glove-heat-rating", "liquid-nitrogen-room", "cold-brittle-steel", "hot-part", "cold-part-and-frost",
+         "shrink-seized-halfway"]),
     "pressing on": ({"setup.kind": "join", "join.by": "press"}, ["press-force", "press-stand-clear"]),
+    "pressing a hardened hub on": (
+        {"setup.kind": "join", "join.by": "press", "hub.brittle": True, "join.brittle": True},
+        ["press-force", "hub-burst", "brittle-in-press", "press-stand-clear"]),
     "sliding on": ({"setup.kind": "join", "join.by": "slide"}, []),
 }  # fmt: skip
 
@@ -164,9 +199,25 @@ def test_an_operation_prints_the_cautions_that_belong_to_it(facts: dict[str, Any
     assert expected == ids(evaluate(shipped(), fake, facts_from(facts)))
 
 
+OVERHANGS = {"cutter.overhang": (4.0, "boring-bar-overhang"), "hold.overhang": (3.0, "work-overhang")}
+
+
+@pytest.mark.parametrize(("quantity", "limit", "name"), [(q, *rest) for q, rest in OVERHANGS.items()])
+def test_a_bar_or_part_that_stands_out_far_prints_its_caution_at_its_limit(
+    quantity: str, limit: float, name: str
+) -> None:
+    def printed(value: Has | Lacks | None, machine: str = "lathe") -> bool:
+        fake = FakeBook(SHIPPED_QUANTITIES, list(SCOPES.values()), {quantity: value} if value is not None else {})
+        return name in ids(evaluate(shipped(), fake, facts_from({"setup.machine_kind": machine})))
+
+    assert printed(Has(limit)) and printed(Lacks(("here",)))
+    assert not printed(Has(limit - 0.01)) and not printed(None)
+
+
 def test_every_shipped_caution_is_set_off_by_one_of_these_operations() -> None:
     assert {caution.id for caution in shipped().cautions} == {
-        name for _, names in OPERATIONS.values() for name in names
+        *(name for _, names in OPERATIONS.values() for name in names),
+        *(name for _, name in OVERHANGS.values()),
     }
 
 

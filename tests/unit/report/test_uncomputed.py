@@ -15,8 +15,8 @@ from setupcheck.report.uncomputed import NOT_LOOKED_AT, in_lines, uncomputed
 from tests.unit.report.sample import GEAR, PLATE, WHEEL, changed, line_of, loaded, reviewed
 
 READ = {
-    "Dimension": "nominal lower upper fit measured uncertainty at",
-    "Deviation": "at_most measured uncertainty standard_uncertainty high_at device mark",
+    "Dimension": "nominal lower upper fit measured uncertainty at at_temperature",
+    "Deviation": "at_most measured uncertainty standard_uncertainty high_at device mark indicator",
     "Round": "kind diameter low high hole made",
     "Flat": "kind at facing diameter hole made",
     "Throat": "kind diameter at made",
@@ -36,7 +36,7 @@ READ = {
     "Checked": "caution op by note",
     "Through": "by runout",
     "Span": "low high",
-    "Centre": "on by at runout clearance rests x y grip through turned",
+    "Centre": "on by at runout clearance rests x y grip grip_force through turned",
     "Square": "on by face_runout across chip",
     "Spacer": "name length",
     "Stop": "on against error touches radius direction spacers",
