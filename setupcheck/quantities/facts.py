@@ -137,7 +137,8 @@ def _above_cap(floor: Floor, join: Join, heat: Heat, path: str) -> Fact:
 def _may_trap(floor: Floor, join: Join) -> bool:
     """Whether a hub may shut in air or a liquid: its bore ends inside it, or it has holes or threads besides."""
     ref = floor.loaded.ref(join.outer)
-    surfaces = {n: s for n, s in floor.loaded.job.parts[ref.part].surfaces.items() if s.made != "stock"}
+    drawn = floor.loaded.job.parts[ref.part].surfaces.items()
+    surfaces = {n: s for n, s in drawn if s.made != "stock" or n == ref.surface}  # a bought hub's bore comes with it
     if any(s.kind in ("holes", "thread") for n, s in surfaces.items() if n != ref.surface):
         return True
     if not any(isinstance(s, Round | Flat) for n, s in surfaces.items() if n != ref.surface):

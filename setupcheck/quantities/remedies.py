@@ -30,6 +30,7 @@ from setupcheck.quantities.requirements import read_stack
 from setupcheck.quantities.route import walk
 from setupcheck.quantities.shop import Floor
 from setupcheck.quantities.stacks import build
+from setupcheck.quantities.typical import typical
 from setupcheck.record import record
 
 LEAST_KEPT = 0.2
@@ -81,11 +82,14 @@ def _deviation(loaded: LoadedJob, path: str) -> Deviation | None:
 
 
 def stated(loaded: LoadedJob, path: str) -> Stated | None:
-    """The entry a cause rests on; None where it is not one number."""
+    """The entry a cause rests on, a device alone by its typical value; None where it is not one number."""
     node = _node(loaded, path)
     if isinstance(node, Deviation):
         value = node.measured if node.measured is not None else node.at_most
-        return Stated(abs(value), "um", guard_of(node)) if value is not None else None
+        if value is None:
+            row = typical(node.device or "", path.rpartition(".")[2])
+            return Stated(row.value, "um") if row is not None else None
+        return Stated(abs(value), "um", guard_of(node))
     if isinstance(node, Dimension):
         half = node.uncertainty if node.uncertainty is not None else ((node.upper or 0.0) - (node.lower or 0.0)) / 2.0
         return Stated(half, "um")

@@ -13,6 +13,7 @@ from setupcheck.quantities.scopes import stack_of
 from setupcheck.report.remedies import remedy_in_words
 from setupcheck.report.uncomputed import uncomputed
 from setupcheck.report.wording import clean
+from setupcheck.report.worked_out import worked_out
 from setupcheck.rulebook import Finding
 
 if TYPE_CHECKING:
@@ -40,6 +41,7 @@ def as_data(found: Review) -> dict[str, object]:
     from setupcheck import __version__
 
     job, house = found.loaded.job, found.house
+    lines = worked_out(found)  # before the quantities, which list what was looked at
     return {
         "format": FORMAT,
         "setupcheck": __version__,
@@ -67,6 +69,7 @@ def as_data(found: Review) -> dict[str, object]:
             }
             for g in found.gates
         ],
+        "worked_out": lines,
         "findings": [_finding(found, f) for f in found.evaluation.findings],
         "cautions": [
             {

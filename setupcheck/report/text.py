@@ -14,6 +14,7 @@ from setupcheck.report.causes import cause_in_words
 from setupcheck.report.remedies import remedy_in_words
 from setupcheck.report.uncomputed import in_lines, uncomputed
 from setupcheck.report.wording import as_stated, clean, finer, in_unit, on_the_dial, title_of, unit_of, wrap
+from setupcheck.report.worked_out import worked_out
 from setupcheck.rulebook import VERDICTS, CautionLine, Finding
 
 CAUTIONS_SHOWN = 5
@@ -34,6 +35,7 @@ def as_text(found: Review, *, everything: bool = False) -> str:
         _stops(found),
         _findings(found, everything),
         _requirements(found, everything),
+        _worked_out(found),
         _uncomputed(found),
         _gates(found),
         _cautions(found, everything),
@@ -277,6 +279,14 @@ def _gate(gate: Gate, by: str, *, inches: bool) -> str:
     if gate.reading is not None:
         text += f", set by {by}"
     return text + ("; this high spot takes away from another" if gate.least > 0.0 else "")
+
+
+def _worked_out(found: Review) -> Iterator[str]:
+    lines = worked_out(found)
+    if lines:
+        yield "WORKED OUT"
+        for line in lines:
+            yield from wrap(line, first="  ", rest="      ")
 
 
 def _uncomputed(found: Review) -> Iterator[str]:

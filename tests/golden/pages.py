@@ -27,6 +27,16 @@ MISTAKES = (
 )
 
 
+SLIPS = (
+    WHEEL.replace("tilt: 3deg 34' 35\"", "tilt: 3deg 10' 47\"")
+    .replace("tip_radius: 20.0", "tip_radius: 14.0")
+    .replace("hub: 175 degC", "hub: 140 degC")
+    .replace("spacers: [{name: shim, length: 1.500 ±0.003}]", "spacers: []")
+)
+"""Four slips at once: the angle of the tip diameter, a cutter of the worm's size, heat for the nominal fit, no shim."""
+SAID_OF_SLIPS = ("CUTTER-003", "HEAT-001", "PLACE-001", "TILT-002")
+
+
 def reports() -> dict[str, str]:
     """File name -> text of every golden report."""
     found = {f"{job.stem}.txt": as_text(review(job)) for job in sorted((ROOT / "jobs").glob("*.yaml"))}
@@ -43,6 +53,18 @@ def mistakes() -> str:
     raise AssertionError("the mistakes went unnoticed")
 
 
+def slips() -> str:
+    """What the review says to the four slips: message and remedy of each, in the order of the report."""
+    text = as_text(review(read_job_text(SLIPS, "slips.yaml"))).split("FINDINGS\n")[1].split("\n\n")[0]
+    found = re.split(r"\n(?=  \w+  [A-Z]+-\d)", text)
+    told = []
+    for one in found:
+        if one.split()[1] in SAID_OF_SLIPS:
+            told.append(one[: one.index("\n      Source:")])
+    assert len(told) == len(SAID_OF_SLIPS)
+    return "\n".join(told)
+
+
 def excerpts() -> dict[str, str]:
     """The excerpts of the README, cut out of the real reports."""
     shimmed = reports()["shimmed-jaws.txt"].splitlines()
@@ -55,6 +77,8 @@ def excerpts() -> dict[str, str]:
     return {
         "shimmed": "\n".join([*head, "", "FINDINGS", *shimmed[first:after], "  …"]),
         "good": "\n".join([*good[:2], "", *good[asked : asked + 9], "  …", "", *good[dial : dial + 4], "  …"]),
+        "worked": "\n".join(good[good.index("WORKED OUT") : good.index("", good.index("WORKED OUT"))]),
+        "slips": slips(),
         "mistakes": mistakes(),
     }
 

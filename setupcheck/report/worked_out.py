@@ -1,0 +1,97 @@
+"""What the planner takes to the machine: angle and side of lean, cutter and insert, heat, grip and growth, the shim."""
+
+from __future__ import annotations
+
+import re
+from collections.abc import Iterator, Sequence
+
+from setupcheck.flow import Review
+from setupcheck.notation import show, show_angle
+from setupcheck.quantities.book import Known, Scope
+from setupcheck.report.wording import clean
+
+_PIECE = re.compile(r"\{([a-z_.]+)\}")
+
+SENTENCES: Sequence[tuple[str, str, str]] = (
+    ("setup", "head", "lead angle {tilt.needed}, worst error of the tilt {tilt.worst_error}"),
+    ("setup", "head", "gauge blocks {tilt.blocks}"),
+    ("setup", "head", "tilting carries the wheel's middle {tilt.shift_height} up or down and {tilt.shift_length} back"),
+    ("setup", "head", "{tilt.picture}"),
+    ("cut", "cutter", "tip radius {cutter.radius}, the worm needs more than {cutter.smallest_radius}"),
+    (
+        "cut",
+        "cutter",
+        "6 um of blue marks {cutter.contact} of a flank, clearance under the worm's tip {cutter.clearance}",
+    ),
+    (
+        "cut",
+        "insert",
+        "{cutter.width_needed} wide at pitch height and {cutter.tip_width} at its tip fit the thread without backlash",
+    ),
+    ("join", "fit", "interference {fit.interference_least} to {fit.interference_most} at 20 degC"),
+    ("join", "fit", "in service {fit.grip_least} to {fit.grip_most}, elastic up to {fit.elastic} ({fit.weaker})"),
+    ("join", "fit", "holds {fit.torque_held} at its loosest and warmest"),
+    ("join", "fit", "holds what it must up to {fit.holds_to} and is loose at {fit.loosens_at}"),
+    ("join", "fit", "pressing in takes up to {fit.press_force}"),
+    ("join", "fit", "the root circle grows by {fit.growth_least} to {fit.growth_most} on diameter"),
+    ("join", "fit", "the shaft's hole closes by up to {fit.hole_closing}"),
+    ("join", "heat", "the tightest pair needs {heat.needed}, the hub still has {heat.at_shaft} at the shaft"),
+    ("join", "heat", "{heat.window} over the shaft until it may bite, while nothing touches"),
+    ("join", "heat", "a gap of up to {heat.shoulder_gap} may open at the shoulder as it cools"),
+    ("place", "place", "{place.shim}"),
+)
+"""Kind of thing, what the line is about, and the sentence; it is said where every number in it is known and not zero."""
+
+
+def worked_out(found: Review) -> list[str]:
+    """One line for each thing and subject: `op 70, heat: the tightest pair needs 139 degC, …; 63 s over the shaft …`."""
+    told: dict[tuple[int, str, str], list[str]] = {}
+    for scope, subject, sentence in _all(found):
+        where = f"op {scope.op}, " if scope.op is not None else ""
+        order = scope.op if scope.op is not None else 1_000_000
+        told.setdefault((order, where, subject), []).append(sentence)
+    return [f"{where}{subject}: {_joined(lines)}" for (_, where, subject), lines in sorted(told.items(), key=_order)]
+
+
+def _order(item: tuple[tuple[int, str, str], list[str]]) -> int:
+    return item[0][0]
+
+
+def _joined(sentences: list[str]) -> str:
+    """Half sentences with semicolons between, a whole one as it is."""
+    text = sentences[0]
+    for one in sentences[1:]:
+        text += f" {one}" if text.endswith(".") else f"; {one}" if not one[0].isupper() else f". {one}"
+    return text
+
+
+def _all(found: Review) -> Iterator[tuple[Scope, str, str]]:
+    for kind, subject, sentence in SENTENCES:
+        for scope in found.book.instances(kind):
+            said = _filled(found, scope, sentence)
+            if said:
+                yield scope, subject, said
+
+
+def _filled(found: Review, scope: Scope, sentence: str) -> str:
+    """The sentence with its numbers; empty where one of them is missing, or all of them are zero."""
+    pieces: dict[str, str] = {}
+    nothing = True
+    for name in _PIECE.findall(sentence):
+        answer = found.book.get(name, scope)
+        if not isinstance(answer, Known):
+            return ""
+        if isinstance(answer.value, str):
+            pieces[name], nothing = answer.value, False
+        else:
+            value = float(answer.value)  # type: ignore[arg-type]
+            unit, digits = found.book.unit(name, scope), found.book.digits(name, scope)
+            nothing = nothing and value == 0.0
+            pieces[name] = _angle(value) if unit == "deg" else show(value, unit, digits)
+    return "" if nothing else clean(_PIECE.sub(lambda match: pieces[match[1]], sentence))
+
+
+def _angle(value: float) -> str:
+    """All three spellings, so that nobody converts at the machine."""
+    shown = (show_angle(value, "dms", 0), show_angle(value, "deg", 4), show_angle(value, "gon", 4))
+    return f"{shown[0]} ({shown[1]}, {shown[2]})"
