@@ -142,9 +142,7 @@ def _may_trap(floor: Floor, join: Join) -> bool:
     if any(s.kind in ("holes", "thread") for n, s in surfaces.items() if n != ref.surface):
         return True
     if not any(isinstance(s, Round | Flat) for n, s in surfaces.items() if n != ref.surface):
-        surfaces = dict(floor.loaded.job.parts[ref.part].surfaces)  # a hub bought as it is: its stock is its shape
-    elif ref.surface not in surfaces:
-        surfaces[ref.surface] = floor.loaded.job.parts[ref.part].surfaces[ref.surface]
+        surfaces = dict(drawn)  # a hub bought as it is: its stock is its shape
     shapes = [outline(s) for s in surfaces.values() if isinstance(s, Round | Flat)]
     open_to = min(s.low for s in shapes)
     for bore in sorted((s for s in shapes if s.kind in ("bore", "taper", "thread")), key=lambda s: s.low):
