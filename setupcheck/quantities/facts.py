@@ -141,6 +141,8 @@ def _may_trap(floor: Floor, join: Join) -> bool:
     surfaces = {n: s for n, s in drawn if s.made != "stock" or n == ref.surface}  # a bought hub's bore comes with it
     if any(s.kind in ("holes", "thread") for n, s in surfaces.items() if n != ref.surface):
         return True
+    if not any(isinstance(s, Round | Flat) for n, s in surfaces.items() if n != ref.surface):
+        surfaces = dict(drawn)  # a hub bought as it is: its stock is its shape
     shapes = [outline(s) for s in surfaces.values() if isinstance(s, Round | Flat)]
     open_to = min(s.low for s in shapes)
     for bore in sorted((s for s in shapes if s.kind in ("bore", "taper", "thread")), key=lambda s: s.low):

@@ -9,7 +9,7 @@ import pytest
 from setupcheck.physics.heating import DULL, Ring, carry_time, cooled_temperature, joining_play, seating_time
 from setupcheck.quantities.book import Open
 
-from .joint_text import answer, changed, finding, number
+from .joint_text import answer, changed, finding, number, reviewed
 
 CARRY = "carry: 10 s"
 # slices 10 mm of 90 and 20 mm of 115, as one ring of the same volume
@@ -95,3 +95,12 @@ def test_the_gap_at_the_shoulder() -> None:
     held = changed(faces, ("      square: bore\n", stop + "      grips_first: shoulder-end\n"))
     assert 0.0 == number(held, "heat.shoulder_gap")
     assert answer(changed(), "heat.shoulder_gap") is None  # no stop
+
+
+@pytest.mark.parametrize(("outside", "trapped"), [("from: 0, to: 30", False), ("from: 0, to: 40", True)])
+@pytest.mark.parametrize("bore", ["", "made: stock, "], ids=["bored here", "bored as bought"])
+@pytest.mark.parametrize("hub", ["", ", made: stock"], ids=["turned here", "turned as bought"])
+def test_a_hub_may_trap_air_however_much_of_it_is_bought(outside: str, trapped: bool, bore: str, hub: str) -> None:
+    text = changed(("from: 0, to: 10}", f"{outside}{hub}}}"), ("bore: {kind: bore, ", f"bore: {{kind: bore, {bore}"))
+    said = {c.id for c in reviewed(text).evaluation.cautions}
+    assert trapped == ("sealed-cavity-heat" in said)
