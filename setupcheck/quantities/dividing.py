@@ -6,6 +6,7 @@ from collections.abc import Iterator
 from dataclasses import replace
 
 from setupcheck.division.methods import rounded_settings
+from setupcheck.jobfile.models import Dimension
 from setupcheck.jobfile.setups import Cut, Divide, Waves
 from setupcheck.ledger.account import Account
 from setupcheck.ledger.causes import Cause
@@ -15,12 +16,21 @@ from setupcheck.quantities.typical import Typical, typical
 
 
 def divided(
-    pattern: Pattern, divide: Divide | None, cut: Cut, *, op: int, name: str, worm_ratio: int | None, turn: int
+    pattern: Pattern,
+    divide: Divide | None,
+    cut: Cut,
+    *,
+    op: int,
+    name: str,
+    worm_ratio: int | None,
+    turn: int,
+    on_table: bool = False,
 ) -> Pattern:
     """The pattern with the errors of the dividing method and of the single places.
 
     No `divide` entry: the division is undetermined, unless there is only one place. An entry without any error of the
     device takes the typical ones of its way of dividing.
+    on_table  holes or slots under the spindle of a rotary table, which stands somewhere over its axis
     """
     path = f"setups.{op}.divide"
     head = f"op {op}, dividing {name}"
@@ -89,7 +99,7 @@ def divided(
         tuple(scatter),
         rounding,
         tuple(drift),
-        _table_offset(cut, op, name, pattern.radius)[0],
+        _table_offset(cut, op, name, pattern.radius, on_table=on_table)[0],
     )
 
 
@@ -140,21 +150,23 @@ def _systematic(divide: Divide, worm_ratio: int | None) -> Iterator[tuple[str, f
             yield "once per crank turn", owner.once_per_crank, worm_ratio, f"{key}.once_per_crank"
 
 
-def _table_offset(cut: Cut, op: int, name: str, radius: float) -> tuple[Account, Account]:
-    """(radial error, error across it) [mm] from the spindle's place over a rotary table."""
-    if not cut.spindle_to_axis:
+def _table_offset(cut: Cut, op: int, name: str, radius: float, *, on_table: bool) -> tuple[Account, Account]:
+    """(radial error, error across it) [mm] from the spindle's place over a rotary table; an axis not stated is open."""
+    places = cut.spindle_to_axis or {}
+    if not places and not on_table:
         return Account(), Account()
-    radial, across = Account(), Account()
     path = f"setups.{op}.cut.{name}.spindle_to_axis"
-    if (x := cut.spindle_to_axis.get("x")) is not None:
-        middle, error = size_error(x, Entry(f"op {op}, {name}: spindle to table axis, x", op, f"{path}.x", ""))
-        radial = error.plus_constant(middle - radius)
-    if (y := cut.spindle_to_axis.get("y")) is not None:
-        middle, error = size_error(y, Entry(f"op {op}, {name}: spindle to table axis, y", op, f"{path}.y", ""))
-        across = error.plus_constant(middle)
-    return radial, across
+
+    def off(axis: str, stated: Dimension | None, drawn: float) -> Account:
+        entry = Entry(f"op {op}, {name}: spindle to table axis, {axis}", op, f"{path}.{axis}", "")
+        if stated is None:
+            return Account.of(entry.missing()).along(1)
+        middle, error = size_error(stated, entry)
+        return error.plus_constant(middle - drawn)
+
+    return off("x", places.get("x"), radius), off("y", places.get("y"), 0.0)
 
 
-def table_turn(cut: Cut, *, op: int, name: str, radius: float) -> Account:
+def table_turn(cut: Cut, *, op: int, name: str, radius: float, on_table: bool = False) -> Account:
     """What the y setting of a spindle over a rotary table turns the whole pattern by [rad]. Source: geometry (arc / r)."""
-    return _table_offset(cut, op, name, radius)[1] * (1.0 / radius)
+    return _table_offset(cut, op, name, radius, on_table=on_table)[1] * (1.0 / radius)

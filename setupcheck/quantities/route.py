@@ -130,6 +130,7 @@ def _cut(floor: Floor, held: Held, placing: Placing, name: str, cut: Cut) -> Non
         start = floor.sense(ref.part) * fresh.start + (floor.mark(ref.part) or 0.0)
         fresh = replace(fresh, start=start)
         _, machine = machine_of(loaded, setup)
+        on_table = node.kind in ("holes", "slot") and machine is not None and machine.kind == "rotary-table"
         pattern = divided(
             fresh,
             setup.divide,
@@ -138,9 +139,10 @@ def _cut(floor: Floor, held: Held, placing: Placing, name: str, cut: Cut) -> Non
             name=name,
             turn=placing.sg,
             worm_ratio=machine.worm_ratio if machine is not None else None,
+            on_table=on_table,
         )
         target = replace(target, pattern=pattern)
-        turn = table_turn(cut, op=op, name=name, radius=fresh.radius)
+        turn = table_turn(cut, op=op, name=name, radius=fresh.radius, on_table=on_table)
     state = route.cut(
         placing,
         replace(target, op=op),

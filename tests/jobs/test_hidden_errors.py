@@ -318,3 +318,23 @@ def test_a_spacer_at_a_stop_counts_with_its_size_as_found() -> None:
     length = next(r.combined.worst for k, r in judged(text).results.items() if k.startswith("length"))
     # the part stands 10 um nearer the tool than the stop was set for, so it comes out that much thinner
     assert (9.982, 9.998) == (pytest.approx(length.low), pytest.approx(length.high))
+
+
+@pytest.mark.parametrize(
+    ("gone", "missing"),
+    [
+        ("x: 2.375 ±0.0002, ", {"setups.30.cut.holes.spindle_to_axis.x"}),
+        ("x: 2.75 ±0.001, ", {"setups.40.cut.slot.spindle_to_axis.x"}),
+        (", y: 0 ±0.0003", {"setups.40.cut.slot.spindle_to_axis.y"}),
+        ("        spindle_to_axis: {x: 2.375 ±0.0002, y: 0 ±0.0002}\n", {"setups.30.cut.holes.spindle_to_axis.x"}),
+        (
+            ", spindle_to_axis: {x: 2.75 ±0.001, y: 0 ±0.0003}",
+            {"setups.40.cut.slot.spindle_to_axis.x", "setups.40.cut.slot.spindle_to_axis.y"},
+        ),
+    ],
+)
+def test_a_place_of_the_spindle_over_a_rotary_table_that_is_not_stated_is_open(gone: str, missing: set[str]) -> None:
+    plate = shipped("jobs/index-plate.yaml").read_text(encoding="utf-8")
+    found = judged(changed(plate, gone, ""))
+    assert found.verdict == "open"
+    assert {m for f in found.evaluation.findings if f.verdict == "open" for m in f.missing} == missing
