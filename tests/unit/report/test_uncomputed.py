@@ -139,8 +139,8 @@ def test_what_only_the_backlash_needs_is_told_where_none_is_required() -> None:
     lines = " ".join(told(changed(WHEEL, ("  - {what: backlash, between: [10 um, 120 um]}\n", ""))))
     for said in (
         "housing of grey-iron",
-        "width of the insert 2.385",
-        "error of the depth of teeth 10 um",
+        "width of the insert 2.387",
+        "error of the depth of teeth 5 um",
         "worm of 16MnCr5",
     ):
         assert said in lines
