@@ -230,7 +230,9 @@ def combine(figure: Figure, draws: Draws, *, low: float | None, high: float | No
     known = base + sum(p.known for p in pushes)
     above = math.sqrt(sum((p.up - p.known) ** 2 for p in pushes))
     below = math.sqrt(sum((p.down + p.known) ** 2 for p in pushes))
-    rss = Ends(known - below, known + above) if figure.signed else Ends(0.0, math.hypot(known, above))
+    rss = Ends(0.0, math.hypot(known, above))
+    if figure.signed:  # known swings that cancel leave less than the root of their squares
+        rss = Ends(max(known - below, worst.low), min(known + above, worst.high))
     values = np.atleast_2d(figure.sample(draws))  # one row, or the least and the largest of a turn
     least, most = values[0], values[-1]
     beyond = 1.0 - confidence

@@ -16,7 +16,7 @@ from numpy.typing import NDArray
 from setupcheck.ledger import teeth
 from setupcheck.ledger.account import Account
 from setupcheck.ledger.causes import Cause
-from setupcheck.ledger.route import Pattern
+from setupcheck.ledger.route import Pattern, Scatter
 from setupcheck.record import record
 
 if TYPE_CHECKING:
@@ -141,28 +141,38 @@ class Length:
 class OverATurn:
     """A length that swings once a turn with an eccentricity: account -+ factor |offset|. Both ends count.
 
+    pattern  places that also scatter outwards, each by factor r_j; None where there are none
     `sample` has two rows, the least and the largest of the turn.  Source: geometry, derived here.
     """
 
     account: Account
     offset: Account
     factor: float
+    pattern: Pattern | None = None
     signed: bool = True
+
+    def _outwards(self) -> list[Scatter]:
+        return [s for s in self.pattern.scatter if s.along == "radial"] if self.pattern is not None else []
 
     def base(self) -> float:
         return real_pushes(self.account)[0]
 
     def pushes(self) -> list[Push]:
         _, each = vector_pushes(self.offset, self.factor)
-        both = [
-            Push(p.cause, p.up - p.down, p.up - p.down) for p in each
-        ]  # what swings out swings in half a turn later
-        return merged(real_pushes(self.account)[1], both)
+        both = [Push(p.cause, p.up, p.up) for p in each]  # what swings out swings in half a turn later
+        own = [Push(s.cause, self.factor * s.bound, self.factor * s.bound) for s in self._outwards()]
+        return merged(real_pushes(self.account)[1], both, own)
 
     def undetermined(self) -> tuple[str, ...]:
-        return tuple(dict.fromkeys(self.account.undetermined() + self.offset.undetermined()))
+        mine = tuple(s.cause.missing for s in self._outwards() if s.cause.law == "undetermined")
+        return tuple(dict.fromkeys((*self.account.undetermined(), *self.offset.undetermined(), *mine)))
 
     def sample(self, draws: Draws) -> Reals:
+        if self.pattern is not None and self._outwards():
+            offset, places = draws.account(self.offset), teeth.angles(self.pattern)
+            each = teeth.waves(offset, places) + draws.radials(self.pattern)
+            middle = draws.real(self.account)
+            return np.asarray([middle + self.factor * each.min(axis=1), middle + self.factor * each.max(axis=1)])
         middle, swing = draws.real(self.account), self.factor * np.abs(draws.account(self.offset))
         return np.asarray([middle - swing, middle + swing])
 

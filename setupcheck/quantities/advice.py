@@ -62,8 +62,13 @@ def circle(cut: WheelCut, smallest: float, floor: Floor) -> str:
     )
 
 
-def grip(pair: Pair, asked: float, held: float, rubbing: Friction, least: float) -> str:
-    """Least interference at 20 degC that carries the load. Source: quantities.strength, straight in the interference."""
+def grip(pair: Pair, asked: float, held: float, rubbing: Friction, least: float) -> str | None:
+    """Least interference at 20 degC that carries the load; None where it does already.
+
+    Source: quantities.strength, straight in the interference.
+    """
+    if held >= asked:
+        return None
     needed = least + (asked - held) / force_held(pair, 1.0, rubbing)
     return (
         f"Bring the least interference from {show(least, 'um', 1)} to {show(_up(needed), 'um', 1)} (closer limits, a larger "
@@ -71,8 +76,13 @@ def grip(pair: Pair, asked: float, held: float, rubbing: Friction, least: float)
     )
 
 
-def slack(most: float, reached: float, elastic: float) -> str:
-    """Largest interference at 20 degC that keeps all elastic. Source: quantities.strength, straight in the interference."""
+def slack(most: float, reached: float, elastic: float) -> str | None:
+    """Largest interference at 20 degC that keeps all elastic; None where it is kept already.
+
+    Source: quantities.strength, straight in the interference.
+    """
+    if reached <= elastic:
+        return None
     allowed = most - (reached - elastic)
     if allowed <= 0.0:
         return (

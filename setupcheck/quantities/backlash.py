@@ -1,6 +1,9 @@
 """Backlash of worm and wheel over one turn, at 20 degC, cold and warm: from insert, depth, thread and housing. mm, rad.
 
-j = s2 - s_x + 2 (a - r1 - r2) tan(alpha) - growth tan(alpha) + temperature -+ 2 e tan(alpha),  circular, at r2.
+One gap with the thread in its middle, circular, at r2:
+    j = s2 - s_x + 2 (a - r1 - r2 + depth) tan(alpha) - growth (tan(alpha) - s_x/d2) + temperature -+ 2 (e + r_j) tan(alpha)
+and over the whole mesh less what flanks lose that no longer fit each other (`_misfit`). The same numbers come out of a rack
+in gaps, point by point, in tests/unit/worm.
 """
 
 from __future__ import annotations
@@ -9,10 +12,12 @@ import math
 from itertools import product
 
 from setupcheck.jobfile.models import Dimension
+from setupcheck.jobfile.names import Ref
 from setupcheck.jobfile.setups import Join
 from setupcheck.ledger.account import Account
 from setupcheck.ledger.causes import Cause
 from setupcheck.ledger.figures import OverATurn
+from setupcheck.ledger.route import State
 from setupcheck.notation import NotationError, length
 from setupcheck.physics.materials import Range
 from setupcheck.quantities import pairing, strength
@@ -62,16 +67,20 @@ def backlash(floor: Floor, stack: Stack) -> Built | Open:
     if opened or not isinstance(found, Drive) or isinstance(both, Open) or not isinstance(made, WheelCut):
         return _merged(opened)
     factor = _along(floor, stack, found)
-    parts = [_gap(floor, made), _mesh(floor, found), _growth(floor, found), _temperature(floor, found)]
-    opened = [x for x in parts if isinstance(x, Open)]
+    g, r = both
+    served = _served(floor, found)
+    gap, depth = _gap(floor, made), _depth(floor, made, g)
+    mesh, grown = _mesh(floor, found), _growth(floor, found)
+    opened = [x for x in (gap, depth, mesh, grown, served) if isinstance(x, Open)]
     if opened:
         return _merged(opened)
-    total = Account()
-    for part in parts:
-        assert isinstance(part, Account)
-        total += part
-    g, r = both
-    figure = OverATurn(total * factor, g.offset - r.axis_at(g.z), 2.0 * math.tan(found.pressure_angle) * factor)
+    assert isinstance(gap, Account) and isinstance(depth, Account) and isinstance(mesh, Account)
+    assert isinstance(grown, Account) and isinstance(served, Served)
+    slope = 2.0 * math.tan(found.pressure_angle)
+    strain = grown * (1.0 / found.wheel_diameter) + served.strain
+    total = gap + mesh + depth * slope - grown * (slope / 2.0 - found.thread / found.wheel_diameter) + served.moved
+    total -= _misfit(made, depth, strain)
+    figure = OverATurn(total * factor, g.offset - r.axis_at(g.z), slope * factor, g.pattern)
     return Built(figure, second_order(lean=g.lean - r.lean, lever=abs(g.z - r.z)))
 
 
@@ -120,29 +129,85 @@ def gap_of_insert(floor: Floor, cut: WheelCut, width: float) -> float:
 
 
 def _gap(floor: Floor, cut: WheelCut) -> Account | Open:
-    """Gap as the insert and the depth make it, with their errors: s2 + dW + 2 dd tan(alpha + s2/d2)."""
-    given, path = cut.cutter.width, cut.path
-    touched = cut.cut.depth_from
-    missing = [f"{cut.cutter_path}.width"] if given is None else []
-    if cut.cut.depth_error is None:
-        missing.append(f"{path}.depth_error")
-    if touched is None or (touched.uncertainty is None and touched.at_most is None):
-        missing.append(f"{path}.depth_from.{'uncertainty' if touched and touched.measured else 'at_most'}")
-    if missing or given is None or touched is None:
-        return Open(tuple(missing))
+    """Gap that the insert makes at its planned depth, with the error of its width: s2 + dW."""
+    given = cut.cutter.width
+    if given is None:
+        return Open((f"{cut.cutter_path}.width",))
     middle, of_width = size_error(given, Entry(f"insert of op {cut.op}: width", None, f"{cut.cutter_path}.width", ""))
     try:
-        gap = gap_of_insert(floor, cut, middle)
+        return of_width.plus_constant(gap_of_insert(floor, cut, middle))
     except OutOfRange as why:
         return Open(because=str(why))
-    wall = 2.0 * math.tan(cut.drive.pressure_angle + gap / cut.drive.wheel_diameter)
-    depth = length_error(cut.cut.depth_error, Entry(f"op {cut.op}, teeth: depth", cut.op, f"{path}.depth_error", ""))
+
+
+def _depth(floor: Floor, cut: WheelCut, teeth: State) -> Account | Open:
+    """How much deeper than planned the insert goes, on the radius [mm]: feed, size touched, and where round it was touched.
+
+    The touched surface runs out to the axis that the wheel turns about while it is cut, and it is touched at one place.
+    Source: geometry, derived here.
+    """
+    touched, path = cut.cut.depth_from, cut.path
+    missing = [f"{path}.depth_error"] if cut.cut.depth_error is None else []
+    if touched is None or (touched.uncertainty is None and touched.at_most is None):
+        missing.append(f"{path}.depth_from.{'uncertainty' if touched and touched.measured else 'at_most'}")
+    if missing or touched is None:
+        return Open(tuple(missing))
+    surface = _surface_touched(floor, cut, touched.surface)
+    if surface is None:
+        return Open((f"{path}.depth_from.surface",), f"{touched.surface} is never made before op {cut.op}")
+    fed = length_error(cut.cut.depth_error, Entry(f"op {cut.op}, teeth: depth", cut.op, f"{path}.depth_error", ""))
     name, where = f"op {cut.op}, diameter of {touched.surface} where touched", f"{path}.depth_from"
     if touched.uncertainty is not None:
-        surface = Cause(name, "gauss", cut.op, spread=touched.uncertainty / 2.0, mode="measured", paths=(where,))
+        size = Cause(name, "gauss", cut.op, spread=touched.uncertainty / 2.0, mode="measured", paths=(where,))
     else:
-        surface = Cause(name, "length", cut.op, high=touched.at_most or 0.0, paths=(f"{where}.at_most",))
-    return (of_width + depth * wall - Account.of(surface) * (wall / 2.0)).plus_constant(gap)
+        size = Cause(name, "length", cut.op, high=touched.at_most or 0.0, paths=(f"{where}.at_most",))
+    place = Cause(f"op {cut.op}: where round the {touched.surface} it was touched", "ring", cut.op, high=1.0)
+    out = (surface.axis_at(teeth.z) - teeth.offset).turned_by_an_unknown_angle(place).along(1)
+    return fed - Account.of(size) * 0.5 - out
+
+
+def _surface_touched(floor: Floor, cut: WheelCut, name: str) -> State | None:
+    """The touched surface as it was when the gaps were cut."""
+    ref = floor.loaded.ref(name, cut.drive.wheel.part)
+    made = [
+        setup.op
+        for setup in floor.loaded.job.setups
+        if setup.op <= cut.op
+        for key in setup.cut
+        if (mine := floor.loaded.ref(key, setup.part)) and (mine.part, mine.surface) == (ref.part, ref.surface)
+    ]
+    return floor.now(Ref(ref.part, ref.surface, made[-1]) if made else ref)
+
+
+def _misfit(cut: WheelCut, depth: Account, strain: Account) -> Account:
+    """What the flanks lose over the mesh because they no longer fit each other [mm], never below zero.
+
+    A gap cut off its depth by d leans its flanks wrongly as it turns by w/r2 off the middle, a wheel of another pitch is
+    off by strain w there; both flanks of the mesh together lose up to 2 w (|d|/r2 + |strain|), w where a flank is touched
+    farthest from the middle.  Source: derived here; the rack in its gaps agrees in tests/unit/worm.
+    """
+    d = cut.drive
+    wheel, away = d.wheel_diameter / 2.0, _farthest(cut)
+    total = Account()
+    for words, of, share in (("depth", depth, 2.0 * away / wheel), ("pitch", strain, 2.0 * away)):
+        if of.largest() > 0.0:
+            name = f"mesh, flanks that no longer fit: {words}"
+            total += Account.of(Cause(name, "high-point", None, of=of, mode="derived", paths=("mesh",))) * share
+    return total
+
+
+def _farthest(cut: WheelCut) -> float:
+    """How far from the middle a gap is still touched, as arc at the rolling circle [mm]: by its tip, or by the worm's.
+
+    tip of the wheel: (sqrt(ra2^2 - rb^2) - r2 sin(alpha))/cos(alpha) + s/2;  worm: h/(sin(alpha) cos(alpha)) - s/2, h what
+    the worm reaches past the rolling circle.  Source: line of action of rack and involute (textbook).
+    """
+    d, wheel = cut.drive, cut.drive.wheel_diameter / 2.0
+    sine, cosine = math.sin(d.pressure_angle), math.cos(d.pressure_angle)
+    tip = max(cut.root + (cut.cut.depth or 0.0), wheel)
+    by_wheel = (math.sqrt(tip**2 - (wheel * cosine) ** 2) - wheel * sine) / cosine + d.thread / 2.0
+    by_worm = (d.tip_diameter - d.pitch_diameter) / 2.0 / (sine * cosine) - d.thread / 2.0
+    return max(by_wheel, by_worm)
 
 
 def _mesh(floor: Floor, found: Drive) -> Account | Open:
@@ -162,9 +227,8 @@ def _mesh(floor: Floor, found: Drive) -> Account | Open:
 
 
 def _growth(floor: Floor, found: Drive) -> Account | Open:
-    """- growth of the tooth circle times tan(alpha), from every joint that teeth were cut before."""
+    """Growth of the tooth circle on diameter [mm], from every joint that teeth were cut before."""
     total = Account()
-    slope = math.tan(found.pressure_angle)
     for setup in floor.loaded.job.setups:
         join = setup.join
         if join is None or floor.loaded.ref(join.outer).part != found.wheel.part or join.by not in pairing.FITTED:
@@ -182,7 +246,7 @@ def _growth(floor: Floor, found: Drive) -> Account | Open:
             mode="derived",
             paths=(f"setups.{setup.op}.join",),
         )
-        total -= grown.account(cause) * slope
+        total += grown.account(cause)
     return total
 
 
@@ -206,8 +270,16 @@ def growth(floor: Floor, join: Join, op: int) -> Span | Open:
     return Span(least or 0.0, most or 0.0)
 
 
-def _temperature(floor: Floor, found: Drive) -> Account | Open:
-    """2 tan(alpha) (a alpha_h - r2 alpha_w - r1 alpha_s) dT - s (alpha_s - alpha_w) dT over the service temperatures."""
+@record
+class Served:
+    """What the temperatures of service do: to the backlash [mm], and to the wheel's pitch over the worm's (a strain)."""
+
+    moved: Account
+    strain: Account
+
+
+def _served(floor: Floor, found: Drive) -> Served | Open:
+    """Change of the backlash and of the pitch over the service temperatures, 20 degC among them."""
     mesh, worm = floor.loaded.job.mesh, floor.loaded.job.worm
     assert mesh is not None and worm is not None
     served = mesh.serves_at
@@ -226,17 +298,23 @@ def _temperature(floor: Floor, found: Drive) -> Account | Open:
     opened = [x for x in (house, screw) if isinstance(x, Open)]
     if opened or isinstance(house, Open) or isinstance(screw, Open):
         return _merged(opened)
-    moved = [
-        thermal_backlash(found, rise=t - REFERENCE, housing=h, wheel=w, worm=s)
+    each = [
+        (t - REFERENCE, h, w, s)
         for t in (*served, REFERENCE)
         for h, w, s in product(_ends(house), _ends(wheel.heating), _ends(screw))
     ]
-    span = Span(min(moved), max(moved))
+    moved = [thermal_backlash(found, rise=t, housing=h, wheel=w, worm=s) for t, h, w, s in each]
+    strains = [t * (w - s) for t, _, w, s in each]
     path = "mesh.serves_at" if mesh.serves_at is not None else "mesh"
-    cause = Cause(
-        "drive, its temperature in service", "length", high=(span.high - span.low) / 2.0, mode="derived", paths=(path,)
-    )
-    return span.account(cause)
+    name = "drive, its temperature in service"
+    return Served(_spanned(moved, name, path), _spanned(strains, f"{name}: pitch", path))
+
+
+def _spanned(values: list[float], name: str, path: str) -> Account:
+    """Middle of some values, and half their range as a cause."""
+    span = Span(min(values), max(values))
+    half = (span.high - span.low) / 2.0
+    return span.account(Cause(name, "length", high=half, mode="derived", paths=(path,)))
 
 
 def _ends(found: Range) -> tuple[float, float]:

@@ -257,10 +257,13 @@ def early_touch(cut: WheelCut, floor: Floor) -> float | Open | None:
 
 
 def fewest(cut: WheelCut) -> float:
-    """Least count of teeth that is not undercut. Source: worm.geometry."""
+    """Least count of teeth that is not undercut. Raises: OutOfRange for an angle that is none.  Source: worm.geometry."""
     d = cut.drive
     shift = (d.pitch_diameter - d.reference_diameter) / (2.0 * d.module)
-    return float(math.ceil(fewest_teeth(pressure_angle=d.pressure_angle, shift=shift) - 1e-9))
+    try:
+        return float(math.ceil(fewest_teeth(pressure_angle=d.pressure_angle, shift=shift) - 1e-9))
+    except ValueError as why:
+        raise OutOfRange(str(why)) from None
 
 
 def teeth(cut: WheelCut) -> float:

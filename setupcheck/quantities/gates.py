@@ -60,7 +60,8 @@ def worst_excess(figure: Figure, low: float | None, high: float | None) -> float
 def room(figure: Figure, cause: Cause, *, low: float | None, high: float | None) -> float | None:
     """Factor by which one cause without direction may grow (or must shrink) until the worst case meets its limit.
 
-    1 + margin / push, over the places the figure is the worst of.  None where the cause does not reach the figure.
+    1 + margin / push, over the places the figure is the worst of; 0 where it cannot help.  None where the cause does not
+    reach the figure.
     Source: the worst case is linear in each bound, derived here.
     """
     found: list[float] = []
@@ -69,10 +70,15 @@ def room(figure: Figure, cause: Cause, *, low: float | None, high: float | None)
         mine = next((p for p in pushes if p.cause == cause), None)
         if mine is None:
             continue
-        if high is not None and mine.up > 0.0:
-            found.append(1.0 + (high - base - sum(p.up for p in pushes)) / mine.up)
-        if low is not None and mine.down > 0.0:
-            found.append(1.0 + (base - sum(p.down for p in pushes) - low) / mine.down)
+        margins = []
+        if high is not None:
+            margins.append((high - base - sum(p.up for p in pushes), mine.up))
+        if low is not None:
+            margins.append((base - sum(p.down for p in pushes) - low, mine.down))
+        pushed = [1.0 + margin / push for margin, push in margins if push > 0.0]
+        if pushed and any(margin < 0.0 for margin, push in margins if push <= 0.0):
+            pushed.append(0.0)  # the other limit is passed without it, so no size of it will do
+        found += pushed
     return min(found, default=None)
 
 

@@ -182,7 +182,7 @@ def growth_least(pair: Pair, grip: float) -> float | None:
 
 
 def _growth(pair: Pair, grip: float, *, largest: bool) -> float | None:
-    question: Question = "growth" if largest else "holding"
+    question: Question = "growth" if largest else "closing"  # least: the hub stiff, the shaft soft
     grown = [
         fits.hub_growth(j, pressure=fits.joint_pressure(j, interference=grip), at_diameter=s.outside)
         for j, s in zip(pair.joints(question), pair.sections, strict=True)

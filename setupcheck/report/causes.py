@@ -15,6 +15,7 @@ _ELSEWHERE: tuple[tuple[re.Pattern[str], str, str], ...] = (
     (re.compile(r"(.+), (.+) as bought: (.+)"), r"\1 as bought", r"\3 of \2"),
     (re.compile(r"(.+), mark kept: (run-out|face run-out)[^,]*(.*)"), r"\1 with its mark kept", r"\2\3"),
     (re.compile(r"housing, face to worm axis"), "housing", "distance of the worm axis"),
+    (re.compile(r"mesh, flanks that no longer fit: (.+)"), "mesh", r"flanks that no longer fit, \1 off"),
 )
 """Names of causes that belong to no operation: pattern, where it sits, what it is."""
 

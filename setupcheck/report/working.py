@@ -29,7 +29,7 @@ LAWS = {
     "length": "anywhere within ±",
     "gauss": "Gaussian, cut at 3 standard deviations",
     "one-sided": "one way only",
-    "high-point": "follows the lean",
+    "high-point": "one way, follows what is under it",
     "undetermined": "not known",
 }
 
@@ -111,6 +111,7 @@ def _input(loaded: LoadedJob, book: Book, scope: Scope, argument: str, name: str
         yield from wrap(f"{argument}: {name}", first="    ", rest="      ")
         return
     answer = book.get(name, scope)
+    name = name.removeprefix("settled ")
     if name.startswith(":"):
         line = loaded.line(".".join(x for x in (scope.path, name[1:]) if x))
         if line > 1:

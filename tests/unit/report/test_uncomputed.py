@@ -136,11 +136,11 @@ def test_worm_mesh_and_cutter_are_told_where_no_wheel_is_cut_by_a_single_point()
 
 
 def test_what_only_the_backlash_needs_is_told_where_none_is_required() -> None:
-    lines = " ".join(told(changed(WHEEL, ("  - {what: backlash, between: [10 um, 120 um]}\n", ""))))
+    lines = " ".join(told(changed(WHEEL, ("  - {what: backlash, between: [5 um, 125 um]}\n", ""))))
     for said in (
         "housing of grey-iron",
-        "width of the insert 2.385",
-        "error of the depth of teeth 10 um",
+        "width of the insert 2.387",
+        "error of the depth of teeth 5 um",
         "worm of 16MnCr5",
     ):
         assert said in lines
