@@ -259,16 +259,17 @@ def cooled_temperature(ring: Ring, *, start: float, seconds: float, air: float, 
         raise ValueError("a time cannot be below 0")
     step = seconds / _STEPS
     capacity = ring.heat_capacity
+    low, high = sorted((start, air))  # a foil of no mass would overshoot the air within one step
 
     def rate(temperature: float) -> float:
-        return -heat_loss(ring, temperature=temperature, air=air, film=film) / capacity
+        return -heat_loss(ring, temperature=min(max(temperature, low), high), air=air, film=film) / capacity
 
     now = start
     for _ in range(_STEPS):
         a = rate(now)
         b = rate(now + step / 2.0 * a)
         c = rate(now + step / 2.0 * b)
-        now += step / 6.0 * (a + 2.0 * b + 2.0 * c + rate(now + step * c))
+        now = min(max(now + step / 6.0 * (a + 2.0 * b + 2.0 * c + rate(now + step * c)), low), high)
     return now
 
 

@@ -133,7 +133,7 @@ def _gap(floor: Floor, cut: WheelCut) -> Account | Open:
     given = cut.cutter.width
     if given is None:
         return Open((f"{cut.cutter_path}.width",))
-    middle, of_width = size_error(given, Entry(f"insert of op {cut.op}: width", None, f"{cut.cutter_path}.width", ""))
+    middle, of_width = size_error(given, Entry(f"op {cut.op}, insert: width", cut.op, f"{cut.cutter_path}.width", ""))
     try:
         return of_width.plus_constant(gap_of_insert(floor, cut, middle))
     except OutOfRange as why:

@@ -10,7 +10,7 @@ from setupcheck.quantities.drive import middle
 from setupcheck.quantities.shop import Floor
 from setupcheck.quantities.tilting import cuts_the_wheel
 from setupcheck.worm.cutter import profile_error_of_tilt
-from setupcheck.worm.tilt import shift_after_tilt, sine_bar_angle, sine_bar_stack, tilt_error
+from setupcheck.worm.tilt import Shift, shift_after_tilt, sine_bar_angle, sine_bar_stack, tilt_error
 
 
 def worst_error(floor: Floor, set_angle: float, needed_angle: float, allowed: float) -> float | Open | None:
@@ -83,6 +83,14 @@ def _pivot(setup: Setup) -> Dimension | None:
     return setup.head.mid_plane.pivot if setup.head is not None and setup.head.mid_plane is not None else None
 
 
+def _shift(tilt: float, distance: float) -> Shift:
+    """Both shifts by tilting. Raises: OutOfRange for a tilt beyond 45 deg.  Source: worm.tilt."""
+    try:
+        return shift_after_tilt(abs(tilt), pivot_distance=distance)
+    except ValueError as why:
+        raise OutOfRange(str(why)) from None
+
+
 def shift_height(setup: Setup) -> float | None:
     """How far tilting about the pivot carries the mid-plane up or down [mm]: L sin tau; None where no pivot is stated.
 
@@ -91,7 +99,7 @@ def shift_height(setup: Setup) -> float | None:
     pivot = _pivot(setup)
     if pivot is None or setup.head is None:
         return None
-    return shift_after_tilt(abs(setup.head.tilt), pivot_distance=middle(pivot)).height
+    return _shift(setup.head.tilt, middle(pivot)).height
 
 
 def shift_length(setup: Setup) -> float | None:
@@ -102,7 +110,7 @@ def shift_length(setup: Setup) -> float | None:
     pivot = _pivot(setup)
     if pivot is None or setup.head is None:
         return None
-    return shift_after_tilt(abs(setup.head.tilt), pivot_distance=middle(pivot)).length
+    return _shift(setup.head.tilt, middle(pivot)).length
 
 
 def blocks(setup: Setup) -> float | None:

@@ -166,7 +166,8 @@ def picture(floor: Floor, setup: Setup) -> str | Open | None:
 def twist(floor: Floor, error: float, allowed: float) -> float | None:
     """How far a flank runs off over the face for the angle's error and the head's uncertainty [mm]: b tan(error).
 
-    None where the width of the teeth is not stated.  Source: geometry.
+    None where the width of the teeth is not stated.  Raises: OutOfRange for an error that is a wrong setting.
+    Source: geometry.
     """
     from setupcheck.worm.tilt import twist_over_face
 
@@ -175,7 +176,10 @@ def twist(floor: Floor, error: float, allowed: float) -> float | None:
         return None
     ref = floor.loaded.ref(job.mesh.wheel)
     width = getattr(job.parts[ref.part].surfaces[ref.surface], "width", None)
-    return twist_over_face(error + allowed, face_width=width) if width else None
+    try:
+        return twist_over_face(error + allowed, face_width=width) if width else None
+    except ValueError as why:
+        raise OutOfRange(str(why)) from None
 
 
 _HERE = {"floor": "route.floor", "setup": ":"}

@@ -11,7 +11,7 @@ from pathlib import Path
 from setupcheck.shipped import shipped
 from setupcheck.yamlfile import parse, read_text
 
-OVERLAYS = "jobs/mistakes/overlays.yaml"
+OVERLAYS = "tests/jobs/overlays.yaml"
 
 
 @dataclass(frozen=True)
@@ -63,7 +63,7 @@ class Mistake:
 
 def mistakes() -> tuple[Mistake, ...]:
     """All mistakes of the overlays."""
-    data = parse(read_text(shipped(OVERLAYS)), OVERLAYS).data
+    data = parse(read_text(Path(__file__).with_name("overlays.yaml")), OVERLAYS).data
     assert isinstance(data, dict) and str(data["format"]) == "1"
     return tuple(_mistake(row) for row in _rows(data["mistakes"]))
 
@@ -91,7 +91,7 @@ def copy_of(mistake: Mistake) -> str:
         f"# A copy of jobs/{place.job}.yaml with one planted mistake: one line, in one operation, is not as it should be.\n"
         f"# Find it by eye first, then let `setupcheck review jobs/mistakes/{mistake.name}.yaml` find it, change the line as\n"
         "# the report says, and review again. Comments and titles are those of the good job. The answer stands in\n"
-        "# overlays.yaml. Written by `python -m tests.jobs.mistakes`; changes made by hand are lost.\n"
+        "# tests/jobs/overlays.yaml. Written by `python -m tests.jobs.mistakes`; changes made by hand are lost.\n"
         "#\n"
         f"{place.planted()}"
     )

@@ -90,6 +90,15 @@ SPOILT = {
         "stop:   {on: seat, error: 10 um}",
         "stop:   {on: seat, error: 30 um}",
     ),
+    "a depth that is not kept": ("rotator-worm-wheel", "depth_error: 5 um", "depth_error: 20 um"),
+    "an insert badly measured": ("rotator-worm-wheel", "width: 2.387 ±0.004", "width: 2.387 ±0.020"),
+    "an insert a little narrow": ("rotator-worm-wheel", "width: 2.387 ±0.004", "width: 2.380 ±0.004"),
+    "a throat touched without measuring it": ("rotator-worm-wheel", "at_most: 10 um, tool", "at_most: 40 um, tool"),
+    "a throat that runs out where it is touched": (
+        "rotator-worm-wheel",
+        "clearance: [2 um, 8 um], rests: pushed",
+        "clearance: [2 um, 14 um], rests: pushed",
+    ),
     "a worn mandrel": (
         "spur-gear-on-mandrel",
         "at_most: 5 um, device: mandrel-20-far",

@@ -212,3 +212,9 @@ def test_heating_without_expansion_or_air_in_the_gap_is_refused() -> None:
         joining_temperature(0.05, play=0.1, diameter=100, hub_expansion=0, shaft_expansion=STEEL, shaft_temperature=20)
     with pytest.raises(ValueError, match="gap and length"):
         seating_time(RING, hub_temperature=120, shaft_temperature=20, until=110, gap=0, length=30)
+
+
+def test_a_foil_cools_down_to_the_air_and_not_below() -> None:
+    foil = Ring(bore=32, outside=104, length=2.6e-8, density=8700, specific_heat=376, emissivity=0.6)
+    assert 20.0 <= cooled_temperature(foil, start=165, seconds=12, air=20) <= 165.0
+    assert 20.0 <= cooled_temperature(foil, start=20, seconds=12, air=165) <= 165.0

@@ -85,7 +85,7 @@ def test_each_size_moves_the_backlash_as_the_rack_in_its_gap_says(job: str) -> N
     assert slope(exact, "distance", 0.05) == pytest.approx(coefficient(own, "centre distance"), rel=1e-6)
     assert slope(exact, "thread", 0.01) == pytest.approx(coefficient(own, "thickness of its thread"), rel=1e-6)
     # the flank of a wider insert leans by half the gap's angle, which is square in it: 0.05 % here
-    assert slope(exact, "wider", 0.004) == pytest.approx(coefficient(own, "insert of op 40: width"), rel=2e-3)
+    assert slope(exact, "wider", 0.004) == pytest.approx(coefficient(own, "op 40, insert: width"), rel=2e-3)
     # a gap cut deeper is no true involute any more: up to 1 % between pitch height and where the thread now touches
     assert slope(exact, "deeper", 0.02) == pytest.approx(coefficient(own, "op 40, teeth: depth"), rel=1e-2)
     touched = coefficient(own, "diameter of throat where touched")
