@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from setupcheck.division.methods import circles_that_fit, holes_left_over, rounded_settings
-from setupcheck.jobfile.setups import Divide, Setup
+from setupcheck.jobfile.setups import Divide, Setup, Waves
 from setupcheck.ledger.teeth import folded
 from setupcheck.quantities.book import Known, Open, OutOfRange, Quantity
 from setupcheck.quantities.dividing import typical_errors
@@ -119,6 +119,34 @@ def stated(setup: Setup, count: int) -> str | Open:
     return "typical" if typical_errors(setup.divide) else Open((f"setups.{setup.op}.divide.wheel",))
 
 
+HAS_WORM = ("hole-circle", "rotary-table")
+"""Ways of dividing that turn a crank, so that wheel, worm and setting each have an error."""
+HAS_CIRCLE = (*HAS_WORM, "direct", "vernier", "readout")
+"""Ways that read a divided circle or wheel, so that it and the setting each have an error."""
+
+
+def left_out(setup: Setup, count: int) -> str | Open | None:
+    """nothing, or the keys to fill: which error of a stated division nobody says; None where none or a typical one is taken.
+
+    Source: what each way of dividing is made of; a part without an error is written as ±0".
+    """
+    divide = setup.divide
+    assert count > 1
+    if divide is None or (divide.wheel is None and divide.setting is None):
+        return None
+    needed = {
+        "wheel": divide.by in HAS_CIRCLE and not _any_wave(divide.wheel),
+        "worm": divide.by in HAS_WORM and not _any_wave(divide.worm),
+        "setting": divide.setting is None,
+    }
+    missing = tuple(f"setups.{setup.op}.divide.{key}" for key, gone in needed.items() if gone)
+    return Open(missing) if missing else "nothing"
+
+
+def _any_wave(waves: Waves | None) -> bool:
+    return waves is not None and any(getattr(waves, key) is not None for key in Waves.model_fields)
+
+
 def known_kind(stated: str) -> str:
     """stated or typical, of errors that are not missing (missing ones have their own finding). Source: the job file."""
     return stated
@@ -179,6 +207,15 @@ DIVIDE = (
         stated,
         {"setup": ":", **COUNT},
         "whether the dividing method's errors are stated",
+    ),
+    Quantity(
+        "divide.left_out",
+        "setup",
+        "",
+        0,
+        left_out,
+        {"setup": ":", **COUNT},
+        "errors of the division that nobody states",
     ),
     Quantity(
         "divide.error_kind",

@@ -119,6 +119,7 @@ QUANTITIES: Mapping[str, FakeQuantity] = {
         FakeQuantity("divide.setting_error", "setup", "arcsec", 2),
         FakeQuantity("divide.error_stated", "setup", "", 0),
         FakeQuantity("divide.error_kind", "setup", "", 0),
+        FakeQuantity("divide.left_out", "setup", "", 0),
         FakeQuantity("tilt.error", "setup", "arcmin", 1),
         FakeQuantity("cutter.passes_left", "cut", "um", 1),
         FakeQuantity("cutter.last_pass", "cut", "mm", 3),
