@@ -47,6 +47,11 @@ class Gate:
 
 def worst_excess(figure: Figure, low: float | None, high: float | None) -> float:
     """How far the worst case goes beyond its limits; negative inside. Source: base and pushes of the figure."""
+    return max(_excesses(figure, low, high), default=-math.inf)
+
+
+def _excesses(figure: Figure, low: float | None, high: float | None) -> list[float]:
+    """The same for each limit, at each of the places the figure is the worst of."""
     found = []
     for one in alternatives(figure):
         base, pushes = one.base(), one.pushes()
@@ -54,7 +59,7 @@ def worst_excess(figure: Figure, low: float | None, high: float | None) -> float
             found.append(base + sum(p.up for p in pushes) - high)
         if low is not None:
             found.append(low - base + sum(p.down for p in pushes))
-    return max(found, default=-math.inf)
+    return found
 
 
 def room(figure: Figure, cause: Cause, *, low: float | None, high: float | None) -> float | None:
@@ -107,6 +112,7 @@ def gates(scopes: Sequence[Scope], results: Sequence[tuple[str, Result]]) -> lis
     """
     found: list[Gate] = []
     shared: dict[str, int] = {}
+    behind = [(key, result, origins(result.figure)) for key, result in results]
     for scope in scopes:
         entry = scope.node
         if not isinstance(entry, HoldEntry) or entry.key == "error" or entry.error is None or scope.op is None:
@@ -122,13 +128,17 @@ def gates(scopes: Sequence[Scope], results: Sequence[tuple[str, Result]]) -> lis
                 found[shared[same]] = replace(first, also=(*first.also, scope.op))
                 continue
             shared[same] = len(found)
-        gate = _gate(scope, entry, given, planned, results)
+        gate = _gate(scope, entry, given, planned, behind)
         found.append(gate)
     return found
 
 
 def _gate(
-    scope: Scope, entry: HoldEntry, given: Deviation, planned: float, results: Sequence[tuple[str, Result]]
+    scope: Scope,
+    entry: HoldEntry,
+    given: Deviation,
+    planned: float,
+    behind: Sequence[tuple[str, Result, Sequence[Cause]]],
 ) -> Gate:
     path = f"{scope.path}.{entry.key}"
     kept = (
@@ -136,8 +146,10 @@ def _gate(
     )
     lowest, highest, by = 0.0, math.inf, ""
     directed = False
-    for key, result in results:
-        for cause in _causes(result.figure, path, kept):
+    for key, result, causes in behind:
+        for cause in causes:
+            if path not in cause.paths and not (kept and cause.key == kept):
+                continue
             directed = directed or bool(cause.mean)
             stack = result.stack
             low, high = span(result.figure, cause, planned, guard_of(given), low=stack.low, high=stack.high)
@@ -170,11 +182,6 @@ def origins(figure: Figure) -> list[Cause]:
     return list(found)
 
 
-def _causes(figure: Figure, path: str, kept: str) -> list[Cause]:
-    """Causes of a figure that one hold entry states."""
-    return [c for c in origins(figure) if path in c.paths or (kept and c.key == kept)]
-
-
 def span(
     figure: Figure, cause: Cause, planned: float, guard: float, *, low: float | None, high: float | None
 ) -> tuple[float, float]:
@@ -192,10 +199,27 @@ def span(
         factor = room(figure, cause, low=low, high=high)
         return (0.0, math.inf) if factor is None else (0.0, reading_for(planned, guard, factor))
 
+    if not cause.mean:
+        return _straight(figure, cause, planned, low=low, high=high)
+
     def excess(reading: float) -> float:
         return worst_excess(with_cause(figure, cause, cause.scaled(reading / planned)), low, high)
 
     return _interval(excess, planned)
+
+
+def _straight(
+    figure: Figure, cause: Cause, planned: float, *, low: float | None, high: float | None
+) -> tuple[float, float]:
+    """The same for a cause without direction that also stands under high points: every excess is straight in the reading."""
+    largest = math.inf
+    none = _excesses(with_cause(figure, cause, cause.scaled(0.0)), low, high)
+    for without, with_it in zip(none, _excesses(figure, low, high), strict=True):
+        if with_it > without:
+            largest = min(largest, -without / (with_it - without) * planned)
+        elif without > 0.0:
+            return 0.0, 0.0
+    return 0.0, max(largest, 0.0)
 
 
 def _interval(excess: Callable[[float], float], planned: float) -> tuple[float, float]:
