@@ -9,7 +9,6 @@ from setupcheck.notation import show, show_angle
 from setupcheck.physics.heating import planned_heat
 from setupcheck.quantities.book import Quantity
 from setupcheck.quantities.drive import WheelCut
-from setupcheck.quantities.friction import Friction
 from setupcheck.quantities.joining import heat_error
 from setupcheck.quantities.pairing import Pair
 from setupcheck.quantities.shop import Floor
@@ -62,14 +61,14 @@ def circle(cut: WheelCut, smallest: float, floor: Floor) -> str:
     )
 
 
-def grip(pair: Pair, asked: float, held: float, rubbing: Friction, least: float) -> str | None:
+def grip(pair: Pair, asked: float, held: float, friction: float, least: float) -> str | None:
     """Least interference at 20 degC that carries the load; None where it does already.
 
     Source: quantities.strength, straight in the interference.
     """
     if held >= asked:
         return None
-    needed = least + (asked - held) / force_held(pair, 1.0, rubbing)
+    needed = least + (asked - held) / force_held(pair, 1.0, friction)
     return (
         f"Bring the least interference from {show(least, 'um', 1)} to {show(_up(needed), 'um', 1)} (closer limits, a larger "
         "journal, smoother seats), lengthen the seat, or add a key or pins."
@@ -129,7 +128,7 @@ ADVICE = (
             "pair": "fit.pair",
             "asked": "fit.force_asked",
             "held": "fit.force_held",
-            "rubbing": "fit.rubbing",
+            "friction": "fit.friction",
             "least": "fit.interference_least",
         },
         "least interference that carries the load",

@@ -41,7 +41,7 @@ def torque(floor: Floor, stack: Stack) -> Built | Open:
     if opened or not isinstance(lost, float) or not isinstance(rubbing, Friction) or not isinstance(served, tuple):
         return Open(tuple(m for x in opened for m in x.missing), "; ".join(x.because for x in opened if x.because))
     try:
-        unit = strength.torque_held(pair, strength.force_held(pair, 1.0, rubbing))
+        unit = strength.torque_held(pair, strength.force_held(pair, 1.0, rubbing.low))
         taken = min(pair.at(0.0, "holding", t) for t in (*served, strength.REFERENCE))
     except OutOfRange as why:
         return Open(because=str(why))

@@ -6,6 +6,7 @@ import math
 
 from setupcheck.jobfile.names import Ref
 from setupcheck.jobfile.setups import Join
+from setupcheck.notation import show
 from setupcheck.physics import interference as fits
 from setupcheck.physics.heating import holding_temperature, loosening_temperature
 from setupcheck.physics.materials import Question, expansion_for
@@ -93,20 +94,34 @@ def hoop_most(pair: Pair, grip: float) -> float:
     )
 
 
+def shape_in_words(pair: Pair) -> str:
+    """Both materials, and the lengths of constant section with what stands outside and the hole inside. Source: the drawing."""
+    told = [
+        f"{show(s.length, 'mm', 2)} in {show(s.outside, 'mm', 2)}{' (root circle)' if s.toothed else ''}"
+        + (f" on a hole of {show(s.hole, 'mm', 2)}" if s.hole else "")
+        for s in pair.sections
+    ]
+    return f"{pair.hub.name} on {pair.shaft.name}, {show(pair.diameter, 'mm', 3)}: {'; '.join(told)}"
+
+
+def friction_in_words(rubbing: Friction) -> str:
+    """Lowest and highest friction, how good they are and where they come from. Source: `rubbing`."""
+    note = f"; {rubbing.note}" if rubbing.note else ""
+    return f"{rubbing.low:g} to {rubbing.high:g} ({rubbing.kind}{note})"
+
+
 def friction_low(rubbing: Friction) -> float:
     """Lowest friction the joint may have when it slips. Source: `rubbing`."""
     return rubbing.low
 
 
-def force_held(pair: Pair, grip: float, rubbing: Friction) -> float:
+def force_held(pair: Pair, grip: float, friction: float) -> float:
     """Force that the loosest joint holds at its seat in service [N]: sum of mu p pi D L over the sections, over 1.2.
 
     Source: Coulomb friction and Lamé, DIN 7190's steps (from memory).
     """
     slices = [fits.Slice(j, s.length) for j, s in zip(pair.joints("holding"), pair.sections, strict=True)]
-    return fits.sliced_axial_capacity(
-        slices, interference=max(grip, 0.0), friction=rubbing.low, slip_factor=SLIP_FACTOR
-    )
+    return fits.sliced_axial_capacity(slices, interference=max(grip, 0.0), friction=friction, slip_factor=SLIP_FACTOR)
 
 
 def torque_held(pair: Pair, force: float) -> float:
@@ -139,9 +154,9 @@ def press_force(pair: Pair, most: float, rubbing: Friction, join: Join) -> float
     )
 
 
-def holds_to(pair: Pair, least: float, smoothing: float, rubbing: Friction, asked: float) -> float:
+def holds_to(pair: Pair, least: float, smoothing: float, friction: float, asked: float) -> float:
     """Temperature of the whole joint up to which the loosest pair still holds what it must [degC]. Source: physics.heating."""
-    unit = force_held(pair, 1.0, rubbing)  # for each mm of interference, as pressure is straight in it
+    unit = force_held(pair, 1.0, friction)  # for each mm of interference, as pressure is straight in it
     return _finite(
         holding_temperature(least - smoothing, needed=asked / unit, diameter=pair.diameter, **_expansions(pair))
     )
@@ -236,6 +251,10 @@ _LOOSE = {"least": "fit.interference_least", "smoothing": "fit.smoothing"}
 
 STRENGTH = (
     Quantity("fit.pair", "join", "", 0, pair, {**_HERE, "sizes": "fit.sizes"}, "materials and sections of the joint"),
+    Quantity("fit.shape", "join", "", 0, shape_in_words, _PAIR, "how the drawing was read for the joint"),
+    Quantity(
+        "fit.rubs", "join", "", 0, friction_in_words, {"rubbing": "fit.rubbing"}, "friction and where it comes from"
+    ),
     Quantity("fit.smoothing", "join", "um", 1, smoothing, {**_HERE, **_PAIR}, "interference lost to flattened peaks"),
     Quantity("fit.service", "join", "", 0, service, {"join": ":", "op": "@op"}, "coldest and warmest in service"),
     Quantity(
@@ -288,7 +307,7 @@ STRENGTH = (
         "N",
         0,
         force_held,
-        {**_PAIR, "grip": "fit.grip_least", "rubbing": "fit.rubbing"},
+        {**_PAIR, "grip": "fit.grip_least", "friction": "fit.friction"},
         "force the loosest joint holds at its seat",
     ),
     Quantity(
@@ -324,7 +343,7 @@ STRENGTH = (
         "degC",
         0,
         holds_to,
-        {**_PAIR, **_LOOSE, "rubbing": "fit.rubbing", "asked": "fit.force_asked"},
+        {**_PAIR, **_LOOSE, "friction": "fit.friction", "asked": "fit.force_asked"},
         "temperature up to which the joint holds what it must",
     ),
     Quantity(
