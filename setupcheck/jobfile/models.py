@@ -312,7 +312,7 @@ class Part(Shop):
 
 
 class Worm(Shop):
-    starts: int = Field(default=1, ge=1, le=12)
+    starts: int | None = Field(default=None, ge=1, le=12)
     hand: Literal["right", "left"] | None = None
     axial_module: Size | None = None
     reference_diameter: Size | None = None

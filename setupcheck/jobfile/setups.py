@@ -311,6 +311,7 @@ class Heat(Shop):
     shaft: Temperature | None = None
     by: Literal["oven", "hot-plate", "induction", "oil-bath", "flame"] | None = None
     oven_error: TemperatureDifference | None = None
+    read_by: Literal["contact-probe", "crayon", "infrared"] | None = None
     carry: Duration | None = None
     cold_by: Literal["freezer", "dry-ice", "liquid-nitrogen"] | None = None
 

@@ -22,6 +22,9 @@ ZINC_COUNTS = 1.0
 """Percent of zinc from which overheating may smoke. Our screening choice."""
 TEMPER_MARGIN = 50.0
 """Kelvin that fitting heat stays under the last temper. Source: DIN 7190 (from memory); trade rules say 25 to 30."""
+COLD = -20.0
+"""degC below which the colder table of expansions is taken; between it and 20 degC means differ little from those of heating.
+Our screening choice."""
 MEANS_END = 200.0
 """degC up to which the expansion means of heating are meant: most are stated from 20 to 100 or 200 degC."""
 
@@ -131,7 +134,7 @@ def expansion_for(question: Question, part: Part, material: Material, *, tempera
 
     holding:   hub as large, shaft as small as they can be at that temperature
     all others: hub as small, shaft as large
-    Large is the high end above 20 degC and the low end below it, where the colder table (`cooling`) is used.
+    Large is the high end above 20 degC and the low end below it; below COLD the colder table (`cooling`) is used.
     Validity: up to MEANS_END; above it true means are higher, which is safe for a hub at joining and not for holding.
     Source: derived here.
     """
@@ -139,7 +142,9 @@ def expansion_for(question: Question, part: Part, material: Material, *, tempera
     cold = temperature < REFERENCE_TEMPERATURE
     end: End = "high" if large != cold else "low"
     way = "contraction" if cold else "expansion"
-    return _chosen(material.cooling if cold else material.heating, end, f"{end} {way} of the {part}, for {question}")
+    return _chosen(
+        material.cooling if temperature < COLD else material.heating, end, f"{end} {way} of the {part}, for {question}"
+    )
 
 
 def temper_cap(heat_cap: float, *, last_temper: float | None) -> float:

@@ -9,12 +9,21 @@ from setupcheck.physics.materials import Material
 from setupcheck.quantities.material_data import material
 
 FAMILIES = (
-    ("copper-alloy", r"cu|c[cw]\d|c[1-9]\d{4}|bronze|brass|gunmetal|rg\d|sae 6\d"),
-    ("cast-iron", r"gg|gj|jl|jm|js|cast.?iron|gr[ea]y.?iron"),
-    ("aluminium", r"al|aw|[2-7]\d{3}(-t\d|$)"),
-    ("steel", r"\d|steel|c\d\d?[er]?\b|s\d{3}|x\d"),
+    (
+        "copper-alloy",
+        r"(cu|c[cw]\d|c[1-9]\d{4}|rg\d|sae ?6\d|snbz|ms\d\d|pb\d|lg\d|lb\d|ab\d)|.*(bronze|brass|gunmetal|copper)",
+    ),
+    ("cast-iron", r"gg|gj|jl|jm|js|.*(cast.?iron|gr[ea]y.?iron|ductile.?iron|meehanite)"),
+    (
+        "aluminium",
+        r"al(?!loy)|aw|.*alumini?um|[2-7]\d{3}-[oth]\d*"
+        r"|(2007|2011|2014|2017|2024|5083|5754|6012|6026|6060|6061|6063|6082|7020|7075)$",
+    ),
+    ("steel", r"\d|.*steel|c[fk]?\d\d?[er]?\b|s\d{3}|st\d\d|x\d|o1\b|d2\b|h13\b|a2\b|hss\b"),
 )
-"""How names of materials begin, and what they are: EN, UNS and trade names. Source: common designations, from memory."""
+"""How names of materials begin or what word they hold, first match wins: EN, UNS, AISI, old national and trade names. A bare
+number of four digits is steel (4140, 8620) unless it is one of the usual aluminium alloys. Source: common designations, from
+memory."""
 
 Content = Literal["lead", "zinc", "beryllium"]
 
@@ -36,6 +45,9 @@ def material_family(name: str) -> str:
     >>> [material_family(name) for name in ("CuSn12-C", "C93200", "CC483K", "42CrMo4", "C45", "EN-GJL-250", "6082-T6")]
     ['copper-alloy', 'copper-alloy', 'copper-alloy', 'steel', 'steel', 'cast-iron', 'aluminium']
     """
+    found = material(name)
+    if isinstance(found, Material):
+        return found.family
     plain = _plain(name)
     return next((family for family, begins in FAMILIES if re.match(begins, plain)), "other")
 

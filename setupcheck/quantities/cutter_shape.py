@@ -19,6 +19,10 @@ USUAL_FILM = 0.006
 """Thickness of marking blue that a contact share is told for where no requirement says one [mm]. Common practice, 5 to 7 um."""
 
 
+NEAR = 0.01
+"""How far from pitch height a width still counts as that at pitch height [mm]. Source: our screening choice."""
+
+
 @record
 class Shape:
     """Second-order shape of the flank that the cutter leaves: crowning A and twist B [1/mm], ends of the face."""
@@ -187,6 +191,16 @@ def width_needed(cut: WheelCut, floor: Floor) -> float:
     return insert_width(cut, cut.drive.thread, height=cut.pitch_height, tilt=tilt_of(floor, cut))
 
 
+def width_at_pitch(cut: WheelCut) -> float | None:
+    """Smallest width of the insert at pitch height [mm]; None where none is stated there. Source: the job file."""
+    given = cut.cutter.width
+    if given is None or (cut.cutter.width_at is not None and abs(cut.cutter.width_at - cut.pitch_height) > NEAR):
+        return None
+    if given.measured is not None:
+        return given.measured - (given.uncertainty or 0.0)
+    return given.value + (given.lower or 0.0)
+
+
 def tip_width(cut: WheelCut, floor: Floor) -> float:
     """Width of the insert at its tip that just fits the thread as measured, no backlash [mm]; an envelope is a little wider.
 
@@ -332,6 +346,7 @@ SHAPE = (
     _row("insert", "", 0, insert, _CUT, "profile of the insert"),
     _row("insert_gap", "um", 1, insert_gap, {**_SHAPE, "insert": "cutter.insert"}, "what the insert is too narrow by"),
     _row("width_needed", "mm", 4, width_needed, _HERE, "insert at pitch height for the thread, no backlash"),
+    _row("width", "mm", 4, width_at_pitch, _CUT, "smallest width of the insert at pitch height"),
     _row("tip_width", "mm", 4, tip_width, _HERE, "insert at its tip for the thread, no backlash"),
     _row("early_touch", "um", 0, early_touch, _HERE, "how early a turning cutter meets the throat's corners"),
     _row("fewest_teeth", "1", 0, fewest, _CUT, "least count of teeth that is not undercut"),

@@ -50,13 +50,22 @@ def drive(floor: Floor) -> Drive | Open | None:
     mesh, worm = floor.loaded.job.mesh, floor.loaded.job.worm
     if mesh is None or worm is None:
         return None
-    needed = ("axial_module", "reference_diameter", "tip_diameter", "pressure_angle", "profile", "thread_thickness")
+    needed = (
+        "starts",
+        "axial_module",
+        "reference_diameter",
+        "tip_diameter",
+        "pressure_angle",
+        "profile",
+        "thread_thickness",
+    )
     missing = tuple(f"worm.{key}" for key in needed if getattr(worm, key) is None)
     if mesh.centre_distance is None:
         missing += ("mesh.centre_distance",)
     if missing or mesh.centre_distance is None:
         return Open(missing)
-    assert worm.axial_module is not None and worm.reference_diameter is not None and worm.tip_diameter is not None
+    assert worm.starts is not None and worm.axial_module is not None and worm.reference_diameter is not None
+    assert worm.tip_diameter is not None
     assert worm.pressure_angle is not None and worm.thread_thickness is not None
     try:
         lead = lead_angle(starts=worm.starts, axial_module=worm.axial_module, diameter=worm.reference_diameter)

@@ -90,7 +90,7 @@ def _joint_fact(floor: Floor, setup: Setup, join: Join, name: str) -> Fact:
         case "shaft.material_family":
             inner = floor.loaded.ref(join.inner).part
             called = floor.loaded.job.parts[inner].material
-            return material_family(called) if called is not None else UnknownFact(f"parts.{inner}.material")
+            return _family(called, f"parts.{inner}.material")
     return _heat_fact(floor, join, name, f"{path}.heat")
 
 
@@ -202,7 +202,7 @@ def _surface_fact(floor: Floor, scope: Scope, setup: Setup | None, name: str) ->
     if name == "part.material":
         return called
     if name == "part.material_family":
-        return material_family(called)
+        return _family(called, f"parts.{parts[0]}.material")
     found = _content(called, name.removeprefix("part."))
     return found if found is not None else UnknownFact(f"parts.{parts[0]}.material")
 
@@ -250,3 +250,9 @@ def _cut_fact(floor: Floor, scope: Scope, setup: Setup | None, name: str) -> Fac
         return cutter.kind
     turns_a_cutter = machine is not None and machine.kind in ("dividing-head", "rotary-table", "mill", "jig-borer")
     return UnknownFact(f"setups.{setup.op}.cut.{scope.node.name}.cutter") if turns_a_cutter else None
+
+
+def _family(called: str | None, path: str) -> Fact:
+    """Family of a material; unknown where none is named, or where its name does not say."""
+    family = material_family(called) if called is not None else "other"
+    return family if family != "other" else UnknownFact(path)

@@ -40,10 +40,10 @@ def worst_error(floor: Floor, set_angle: float, needed_angle: float, allowed: fl
 
 
 def _wobble(floor: Floor) -> float | Open:
-    """Largest lean of the finished teeth to the axis they work on [rad]; 0 where no axis is named. Source: the ledger."""
+    """Largest lean of the finished teeth to the axis they work on [rad]. Source: the ledger."""
     job = floor.loaded.job
     if job.mesh is None or job.place is None or job.place.axis is None:
-        return 0.0
+        return Open(("place.axis",))
     teeth, axis = floor.now(floor.loaded.ref(job.mesh.wheel)), floor.now(floor.loaded.ref(job.place.axis))
     if teeth is None or axis is None or floor.body(teeth.part) is not floor.body(axis.part):
         return Open(("place.axis",), "wheel and axis are never one piece in this route")
@@ -127,7 +127,7 @@ def blocks(setup: Setup) -> float | None:
 def bar_miss(setup: Setup) -> float | Open | None:
     """Angle between the blocks as stated and the tilt as stated [rad]; None where no sine bar sets it. Source: worm.tilt."""
     head = setup.head
-    if head is None or head.by != "sine-bar":
+    if head is None or (head.by != "sine-bar" and head.sine_bar is None and head.blocks is None):
         return None
     missing = tuple(f"setups.{setup.op}.head.{key}" for key in ("sine_bar", "blocks") if getattr(head, key) is None)
     if head.sine_bar is None or head.blocks is None:

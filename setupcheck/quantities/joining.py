@@ -157,13 +157,16 @@ def needed(floor: Floor, join: Join, most: float, sizes: JointSizes) -> float | 
 
 
 def heat_error(heat: Heat) -> tuple[float, str] | None:
-    """Error of the heat source [K] and the typical value it rests on ("" where it is stated); None where neither is known.
+    """Error of the hub's heat [K] and the typical value it rests on ("" where it is stated); None where neither is known.
+
+    A hub whose own heat is read has the error of what reads it, else that of its heat source.
 
     Source: the job file; rules/data/typical.yaml.
     """
     if heat.oven_error is not None:
         return heat.oven_error, ""
-    row = typical(heat.by, "temperature_error") if heat.by is not None else None
+    by = heat.read_by if heat.read_by is not None else heat.by
+    row = typical(by, "temperature_error") if by is not None else None
     return (row.value, row.name) if row is not None else None
 
 

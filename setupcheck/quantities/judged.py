@@ -56,15 +56,9 @@ def draws() -> Draws:
     return Draws()
 
 
-def requirements(floor: Floor) -> float | None:
-    """Number of requirements; None for a job with neither teeth nor a joint, which needs none.
-
-    Source: our screening choice (a plan without an aim cannot pass).
-    """
-    job = floor.loaded.job
-    toothed = any(s.kind == "teeth" for p in job.parts.values() for s in p.surfaces.values())
-    joined = any(setup.join is not None for setup in job.setups)
-    return float(len(job.require)) if toothed or joined else None
+def requirements(floor: Floor) -> float:
+    """Number of requirements. Source: our screening choice (a plan without an aim cannot pass)."""
+    return float(len(floor.loaded.job.require))
 
 
 def _known(built: Built | Open) -> Known | Open:

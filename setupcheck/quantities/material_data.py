@@ -36,8 +36,14 @@ class UnknownMaterial:
         >>> UnknownMaterial("CuSn13-C", "CuSn12-C").because
         "the material 'CuSn13-C' is not in the list. Nearest: CuSn12-C"
         """
-        offer = f"Nearest: {self.nearest}" if self.nearest else "Write its modulus, expansion and strength in the job"
-        return f"the material {quoted(self.name)} is not in the list. {offer}"
+        said = f"the material {quoted(self.name)} is not in the list"
+        if self.nearest:
+            return f"{said}. Nearest: {self.nearest}"
+        from setupcheck.quantities.contents import material_family  # which asks this list first
+
+        family = material_family(self.name)
+        kin = [each.name for each in materials().values() if each.family == family] or list(materials())
+        return f"{said}, which has {', '.join(kin)}"
 
 
 def material(name: str) -> Material | UnknownMaterial:

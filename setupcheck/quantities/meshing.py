@@ -5,6 +5,7 @@ from __future__ import annotations
 from setupcheck.jobfile.models import Mesh, Toothing
 from setupcheck.quantities.book import Open, Quantity
 from setupcheck.quantities.drive import middle
+from setupcheck.quantities.judged import Result
 from setupcheck.quantities.shop import Floor
 
 
@@ -48,10 +49,21 @@ def end_float(floor: Floor) -> float | None:
 
 
 def backlash_asked(floor: Floor, mesh: Mesh) -> str | None:
-    """asked or not-asked: whether a requirement limits the backlash; None for a mesh without a worm. Source: the job file."""
+    """asked, one-sided or not-asked: whether a requirement limits the backlash at both ends; None without a worm.
+
+    Source: the job file.
+    """
     if floor.loaded.job.worm is None:
         return None
-    return "asked" if any(r.what == "backlash" for r in floor.loaded.job.require) else "not-asked"
+    asked = [r for r in floor.loaded.job.require if r.what == "backlash"]
+    if any(r.between is not None for r in asked):
+        return "asked"
+    return "one-sided" if asked else "not-asked"
+
+
+def least_backlash(result: Result) -> float | None:
+    """Lowest backlash of the worst case [mm]; None for every other figure. Below zero the worm binds. Source: stack.combined."""
+    return result.combined.worst.low if result.stack.require.what == "backlash" else None
 
 
 _HERE = {"floor": "route.floor", "mesh": ":"}
@@ -60,5 +72,14 @@ MESHING = (
     Quantity("mesh.circle_miss", "mesh", "um", 1, circle_miss, _HERE, "pitch circle against count x module"),
     Quantity("mesh.distance_miss", "mesh", "um", 1, distance_miss, _HERE, "centre distance against worm and wheel"),
     Quantity("mesh.end_float", "mesh", "um", 1, end_float, {"floor": "route.floor"}, "end float of the worm"),
+    Quantity(
+        "mesh.least_backlash",
+        "stack",
+        "mm",
+        4,
+        least_backlash,
+        {"result": "stack.combined"},
+        "lowest backlash of the worst case",
+    ),
     Quantity("mesh.backlash_asked", "mesh", "", 0, backlash_asked, _HERE, "whether a backlash is required"),
 )

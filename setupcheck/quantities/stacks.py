@@ -114,10 +114,12 @@ def _oblique(floor: Floor, g: State, r: State) -> Account | Open:
     wheel = floor.loaded.ref(mesh.wheel)
     if (wheel.part, wheel.surface) != (g.part, g.name):
         return Account()
-    missing = tuple(f"worm.{k}" for k in ("hand", "axial_module", "reference_diameter") if getattr(worm, k) is None)
+    missing = tuple(
+        f"worm.{k}" for k in ("hand", "starts", "axial_module", "reference_diameter") if getattr(worm, k) is None
+    )
     if missing:
         return Open(missing)
-    assert worm.axial_module is not None and worm.reference_diameter is not None
+    assert worm.starts is not None and worm.axial_module is not None and worm.reference_diameter is not None
     lead_angle = math.atan(worm.starts * worm.axial_module / worm.reference_diameter)
     return teeth.oblique(g.lean - r.lean, g.pattern, lead_angle=lead_angle, right_hand=worm.hand != "left")
 

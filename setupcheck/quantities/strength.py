@@ -20,8 +20,8 @@ SLIP_FACTOR = 1.2
 """What a joint must hold over what it must carry. Source: 1.2 to 1.5 (from memory); the lower end, as friction is low already."""
 ON_YIELD = 1.0
 """Safety on yield of ductile parts. Source: DIN 7190, 1.0 to 1.3 (from memory); yields are least values already."""
-ON_BREAKING = 2.0
-"""Safety of a brittle hub on its tensile strength. Source: 2 to 3 (from memory)."""
+ON_BREAKING = 3.0
+"""Safety of a brittle hub on its tensile strength. Source: 2 to 3 (from memory); the stricter, as the caution has it."""
 REFERENCE = 20.0  # degC of all sizes, ISO 1
 
 
@@ -44,7 +44,7 @@ def grip_most(pair: Pair, most: float, service: tuple[float, float]) -> float:
 def limit_of(floor: Floor, pair: Pair) -> tuple[float, str] | Open:
     """(interference on diameter at which the weaker part leaves its elastic range [mm], which part and by what criterion).
 
-    Ductile: p = R_e (1 - Q^2)/sqrt(3); brittle hub: tangential stress R_m/2; the least over all sections.
+    Ductile: p = R_e (1 - Q^2)/sqrt(3); brittle hub: tangential stress R_m/3; the least over all sections.
     Source: DIN 7190 (from memory), physics.interference.
     """
     hub, shaft = strength_of(floor, pair.hub_part, pair.hub), strength_of(floor, pair.shaft_part, pair.shaft)
@@ -142,6 +142,14 @@ def force_asked(join: Join, pair: Pair) -> float | None:
     return math.hypot(axial, 2.0 * torque / pair.diameter)
 
 
+def load_stated(join: Join, pair: Pair, op: int) -> str | Open:
+    """stated, or the key to fill: whether the job says what a joint that holds by interference must carry, 0 N m included.
+
+    Source: the job file.
+    """
+    return "stated" if join.must_carry else Open((f"setups.{op}.join.must_carry",))
+
+
 def press_force(pair: Pair, most: float, rubbing: Friction, join: Join) -> float | None:
     """Force at the end of pressing in [N], tightest pair, highest friction; None for a shrink fit. Source: Coulomb, Lamé."""
     if join.by != "press":
@@ -176,11 +184,11 @@ def _expansions(pair: Pair) -> dict[str, float]:
 
 
 def _finite(temperature: float) -> float:
-    if math.isfinite(temperature):
+    if math.isfinite(temperature) and temperature >= REFERENCE:
         return temperature
-    if temperature > 0.0:
+    if temperature > 0.0 and not math.isfinite(temperature):
         raise OutOfRange("the hub does not outgrow its shaft, so warmth does not loosen it")
-    raise OutOfRange("the joint does not hold at any temperature")
+    raise OutOfRange("the loosest pair does not hold even at 20 degC")
 
 
 def growth_most(pair: Pair, grip: float) -> float | None:
@@ -327,6 +335,15 @@ STRENGTH = (
         force_asked,
         {"join": ":", **_PAIR},
         "force at the seat the joint must carry",
+    ),
+    Quantity(
+        "fit.load_stated",
+        "join",
+        "",
+        0,
+        load_stated,
+        {"join": ":", **_PAIR, "op": "@op"},
+        "whether the job says what the joint must carry",
     ),
     Quantity(
         "fit.press_force",

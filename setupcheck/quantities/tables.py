@@ -28,7 +28,7 @@ ROUTE = (
         0,
         judged.requirements,
         {"floor": ":"},
-        "requirements stated by a job with teeth or a joint",
+        "requirements the job states",
     ),
 )
 

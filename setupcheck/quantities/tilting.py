@@ -44,10 +44,12 @@ def needed_angle(floor: Floor, setup: Setup) -> float | Open | None:
     worm = floor.loaded.job.worm
     if worm is None or not cuts_the_wheel(floor.loaded, setup):
         return None
-    missing = tuple(f"worm.{key}" for key in ("axial_module", "reference_diameter") if getattr(worm, key) is None)
+    missing = tuple(
+        f"worm.{key}" for key in ("starts", "axial_module", "reference_diameter") if getattr(worm, key) is None
+    )
     if missing:
         return Open(missing)
-    assert worm.axial_module is not None and worm.reference_diameter is not None
+    assert worm.starts is not None and worm.axial_module is not None and worm.reference_diameter is not None
     try:
         return lead_angle(starts=worm.starts, axial_module=worm.axial_module, diameter=worm.reference_diameter)
     except ValueError as why:
@@ -85,7 +87,9 @@ def belongs_to(floor: Floor, set_angle: float, allowed: float) -> str | None:
     from setupcheck.worm.geometry import whose_lead_angle
 
     worm = floor.loaded.job.worm
-    if worm is None or worm.axial_module is None or worm.reference_diameter is None or set_angle == 0.0:
+    if worm is None or set_angle == 0.0:
+        return None
+    if worm.starts is None or worm.axial_module is None or worm.reference_diameter is None:
         return None
     diameters = {"reference": worm.reference_diameter, "root": worm.reference_diameter - 2.4 * worm.axial_module}
     if worm.tip_diameter is not None:

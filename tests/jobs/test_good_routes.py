@@ -135,7 +135,7 @@ TRY_IT = {  # what the head of each job says to try, and the rules that speak th
     "rotator-worm-wheel": (
         "centre: {on: hub, by: spigot,",
         "centre: {on: rim, by: spigot,",
-        {"STACK-001", "STACK-002"},
+        {"MESH-006", "STACK-001", "STACK-002"},
     ),
 }
 

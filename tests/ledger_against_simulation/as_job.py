@@ -109,7 +109,7 @@ class Writer:
         if self.given.lead_angle:
             module = 20.0 * math.tan(abs(self.given.lead_angle))
             hand = "right" if self.given.lead_angle > 0.0 else "left"
-            job["worm"] = {"hand": hand, "axial_module": f"{module:.14f} mm", "reference_diameter": 20}
+            job["worm"] = {"hand": hand, "starts": 1, "axial_module": f"{module:.14f} mm", "reference_diameter": 20}
             job["mesh"] = {"wheel": "wheel.teeth"}
         job["machines"] = {
             f"lathe-{step.op}": {"kind": "lathe", "axis_runout": BOUND, "worm_ratio": 40}

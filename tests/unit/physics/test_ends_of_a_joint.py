@@ -7,7 +7,7 @@ from itertools import product
 import pytest
 
 from setupcheck.physics import interference as fits
-from setupcheck.physics.materials import Material
+from setupcheck.physics.materials import COLD, Material
 from setupcheck.quantities import strength
 from setupcheck.quantities.joint_shape import Section
 from setupcheck.quantities.material_data import material
@@ -74,7 +74,7 @@ def test_grip_is_the_least_and_the_largest_over_every_expansion_and_temperature(
 ) -> None:
     found = [0.03]
     for t in service:
-        table = "cooling" if t < 20.0 else "heating"
+        table = "cooling" if t < COLD else "heating"
         hub, shaft = getattr(pair.hub, table), getattr(pair.shaft, table)
         for a, i in product((hub.low, hub.high), (shaft.low, shaft.high)):
             found.append(0.03 + 32.0 * (i - a) * (t - 20.0))

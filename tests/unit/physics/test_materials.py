@@ -198,9 +198,10 @@ def test_an_unknown_name_is_no_material_and_the_nearest_is_offered() -> None:
     assert UnknownMaterial("CuSn13-C", "CuSn12-C") == material("CuSn13-C")
     nothing = material("oak")
     assert isinstance(nothing, UnknownMaterial)
-    assert (
-        "the material 'oak' is not in the list. Write its modulus, expansion and strength in the job" == nothing.because
-    )
+    assert nothing.because.startswith("the material 'oak' is not in the list, which has CuSn12-C, ")
+    bronze = material("bronze")
+    assert isinstance(bronze, UnknownMaterial)
+    assert "CuSn7Zn4Pb7-C" in bronze.because and "C45" not in bronze.because
 
 
 GOOD = """format: 1

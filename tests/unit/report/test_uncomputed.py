@@ -50,7 +50,7 @@ READ = {
     "Touched": "surface measured uncertainty at_most tool",
     "Cut": "passes to state leave_on_diameter leave_on_radius leave error removes from_surface finishing_cut form cutter each "
     "spindle_to_axis tool_change_after",
-    "Heat": "hub shaft by oven_error carry cold_by",
+    "Heat": "hub shaft by oven_error read_by carry cold_by",
     "Join": "outer inner by square fit_error clearance rests stop mounted_at",
     "Setup": "op note machine part looks_at_tool keeps hold head divide cut join",
     "Job": "setupcheck title job revision units room confidence parts worm mesh cutters machines setups place require "
