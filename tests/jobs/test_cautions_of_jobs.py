@@ -48,14 +48,14 @@ setups:
 BRONZE, LEADED, BERYLLIUM = (("material: S355J2\n    surfaces:\n      bar", f"material: {name}\n    surfaces:\n      bar")
                              for name in ("C95400", "C93200", "C17200"))  # fmt: skip
 UNKNOWN = (BRONZE[0], BRONZE[1].replace("C95400", "bronze"))
-IRON = (BRONZE[0], BRONZE[1].replace("C95400", "EN-GJL-250"))
+IRON, RING = ((BRONZE[0], BRONZE[1].replace("C95400", name)) for name in ("EN-GJL-250", "100Cr6"))
 HARDENED_SHAFT = ("material: S355J2\n    surfaces:\n      journal", "material: 16MnCr5\n    surfaces:\n      journal")
 BRONZE_SHAFT = ("material: S355J2\n    surfaces:\n      journal", "material: C95400\n    surfaces:\n      journal")
 FLAME, PLATE, COIL, OIL = (("by: oven", f"by: {way}") for way in ("flame", "hot-plate", "induction", "oil-bath"))
 DEGREASED = ("joint: oiled", "joint: degreased")
 NO_JOINT = ("joint: oiled, ", "")
 PRESSED = ("by: shrink, joint: oiled, heat: {hub: 150 degC, by: oven}", "by: press, joint: oiled")
-GRINDER, HEAD = (("{kind: lathe,", f"{{kind: {kind},") for kind in ("grinder", "dividing-head"))
+GRINDER, HEAD, MILL = (("{kind: lathe,", f"{{kind: {kind},") for kind in ("grinder", "dividing-head", "mill"))
 WHEEL_TOOL, BROACH = (("{kind: single-point}", f"{{kind: {kind}}}") for kind in ("grinding-wheel", "broach"))
 NO_FACES = (
     "cut: {front: {}, rim: {cutter: tool}, bore: {}, back: {removes: [bar]}}",
@@ -84,7 +84,14 @@ def gripped(at: str) -> tuple[str, str]:
 SET_OFF: Mapping[str, tuple[int, Changes, Changes]] = {
     "leaded-alloy-dust": (10, (LEADED,), (BRONZE,)),
     "beryllium-copper": (10, (BERYLLIUM, GRINDER), (BERYLLIUM,)),
+    "beryllium-copper-cut": (10, (BERYLLIUM,), (BRONZE,)),
+    "beryllium-copper-heat": (20, (BERYLLIUM,), (BERYLLIUM, PRESSED)),
+    "bearing-ring-heat": (20, (RING, ("hub: 150 degC", "hub: 90 degC")), (RING, ("hub: 150 degC", "hub: 89 degC"))),
     "carbide-dust": (10, (INSERT,), ()),
+    "insert-at-the-bench-wheel": (10, (INSERT,), ()),
+    "grinding-wheel": (10, (WHEEL_TOOL,), ()),
+    "grinding-dust-and-coolant": (10, (WHEEL_TOOL, MILL), (MILL,)),
+    "grinding-wheel-in-a-lathe": (10, (WHEEL_TOOL, MILL), (WHEEL_TOOL, GRINDER)),
     "diamond-on-steel": (10, (INSERT,), ()),
     "coolant-mist": (10, (WHEEL_TOOL,), ()),
     "wheel-overspeed": (10, (GRINDER,), ()),
@@ -103,6 +110,7 @@ SET_OFF: Mapping[str, tuple[int, Changes, Changes]] = {
     "oil-bath-water": (20, (OIL,), (PLATE,)),
     "solvent-before-heat": (20, (DEGREASED,), ()),
     "sealed-cavity-heat": (20, (BLIND,), ()),
+    "sealed-cavity-press": (20, (BLIND, PRESSED), (PRESSED,)),
     "dry-ice-room": (20, (cold("dry-ice"),), (cold("freezer"),)),
     "liquid-nitrogen-room": (20, (cold("liquid-nitrogen"),), (cold("dry-ice"),)),
     "cold-part-and-frost": (20, (cold("freezer"),), ()),
@@ -115,6 +123,11 @@ SET_OFF: Mapping[str, tuple[int, Changes, Changes]] = {
 SILENT: Mapping[str, tuple[Changes, str]] = {
     "leaded-alloy-dust": ((UNKNOWN,), "parts.hub.material"),
     "beryllium-copper": ((UNKNOWN, GRINDER), "parts.hub.material"),
+    "beryllium-copper-cut": ((UNKNOWN,), "parts.hub.material"),
+    "beryllium-copper-heat": ((UNKNOWN,), "parts.hub.material"),
+    "bearing-ring-heat": ((RING, ("hub: 150 degC, ", "")), "setups.20.join.heat.hub"),
+    "grinding-wheel": ((("    machine: shop\n", ""),), "setups.10.machine"),
+    "grinding-wheel-in-a-lathe": ((WHEEL_TOOL, ("    machine: shop\n", "")), "setups.10.machine"),
     "wheel-overspeed": ((("    machine: shop\n", ""),), "setups.10.machine"),
     "boring-bar-overhang": ((("{kind: single-point}", "{kind: boring-head, bar_diameter: 10}"),), "cutters.tool.overhang"),
     "open-flame-alloy": ((UNKNOWN, FLAME), "parts.hub.material"),
@@ -130,6 +143,8 @@ SILENT: Mapping[str, tuple[Changes, str]] = {
     "brittle-in-press": ((PRESSED, ("shaft:\n    material: S355J2\n", "shaft:\n")), "parts.shaft.material"),
 }  # fmt: skip
 """Caution: a job that leaves out what would settle it, and the key to fill."""
+OF_THE_CUT = ("leaded-alloy-dust", "beryllium-copper", "beryllium-copper-cut", "boring-bar-overhang")
+"""Those of op 10 whose key is not one of the setup."""
 
 
 def asked(text: str) -> dict[tuple[str, int | None], str]:
@@ -147,7 +162,7 @@ def test_a_caution_is_set_off_by_what_it_is_about_and_by_nothing_near_it(name: s
 @pytest.mark.parametrize("name", SILENT)
 def test_a_caution_that_the_job_does_not_settle_is_printed_and_names_the_key(name: str) -> None:
     without, key = SILENT[name]
-    op = 10 if "setups.10" in key or name in ("leaded-alloy-dust", "beryllium-copper", "boring-bar-overhang") else 20
+    op = 10 if "setups.10" in key or name in OF_THE_CUT else 20
     assert f"not stated: {key}" == asked(changed(TURNED, *without))[name, op]
 
 
@@ -205,8 +220,7 @@ def test_every_caution_is_set_off_by_a_job_here_or_stands_among_the_first() -> N
     here = {*SET_OFF, "sharp-fresh-teeth", "nip-of-worm-and-wheel"}
     first = {
         "chuck-key-and-jaws", "indicating-out-of-gear", "shims-held-captive", "between-centres", "fly-cutter-indexing",
-        "fly-cutter-one-screw", "hands-while-indexing", "drill-and-reamer-chips", "grinding-wheel",
-        "grinding-dust-and-coolant", "grinding-wheel-in-a-lathe", "gloves-near-spindle", "bronze-chips",
+        "fly-cutter-one-screw", "hands-while-indexing", "drill-and-reamer-chips", "gloves-near-spindle", "bronze-chips",
         "tilted-head-drops", "hot-part", "glove-heat-rating", "shrink-seized-halfway", "press-force", "press-stand-clear",
     }  # fmt: skip
     assert here | first == {c.id for c in rules().cautions}
@@ -217,7 +231,7 @@ def test_every_caution_is_set_off_by_a_job_here_or_stands_among_the_first() -> N
 def test_a_caution_is_at_most_three_short_sentences(caution: object) -> None:
     text = caution.text  # type: ignore[attr-defined]
     assert len(re.findall(r"[.!?](?:\s|$)", text)) <= 3, text
-    assert len(text) <= 270
+    assert len(text) <= 290
 
 
 # -- how far a part stands out
