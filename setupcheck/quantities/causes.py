@@ -160,6 +160,10 @@ def length_error(given: Deviation | None, entry: Entry) -> Account:
     return Account.of(cause)
 
 
+BARE = ".uncertainty"
+"""Key that a size without limits lacks. Written with the size it is ±: `66 ±0.01`."""
+
+
 def size_error(given: Dimension, entry: Entry) -> tuple[float, Account]:
     """(middle of a length with its limits [mm], deviation from it).
 
@@ -176,7 +180,7 @@ def size_error(given: Dimension, entry: Entry) -> tuple[float, Account]:
             return given.nominal, Account.of(
                 Cause(entry.name, "gauss", entry.op, spread=given.uncertainty / 2.0, paths=(entry.path,))
             )
-        return given.nominal, Account.of(entry.missing())
+        return given.nominal, Account.of(replace(entry.missing(), missing=f"{entry.path}{BARE}"))
     lower, upper = given.lower or 0.0, given.upper or 0.0
     half = (upper - lower) / 2.0
     return given.nominal + (upper + lower) / 2.0, Account.of(

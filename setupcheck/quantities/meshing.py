@@ -61,9 +61,11 @@ def backlash_asked(floor: Floor, mesh: Mesh) -> str | None:
     return "one-sided" if asked else "not-asked"
 
 
-def least_backlash(result: Result) -> float | None:
+def least_backlash(result: Result | None) -> float | None:
     """Lowest backlash of the worst case [mm]; None for every other figure. Below zero the worm binds. Source: stack.combined."""
-    return result.combined.worst.low if result.stack.require.what == "backlash" else None
+    if result is None or result.stack.require.what != "backlash":
+        return None
+    return result.combined.worst.low
 
 
 _HERE = {"floor": "route.floor", "mesh": ":"}
@@ -78,8 +80,9 @@ MESHING = (
         "mm",
         4,
         least_backlash,
-        {"result": "stack.combined"},
+        {"result": "settled stack.combined"},
         "lowest backlash of the worst case",
+        {"result": None},
     ),
     Quantity("mesh.backlash_asked", "mesh", "", 0, backlash_asked, _HERE, "whether a backlash is required"),
 )

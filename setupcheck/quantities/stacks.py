@@ -11,7 +11,7 @@ from setupcheck.ledger.figures import Figure
 from setupcheck.ledger.route import State
 from setupcheck.quantities.backlash import backlash
 from setupcheck.quantities.book import Open
-from setupcheck.quantities.causes import Entry, size_error
+from setupcheck.quantities.causes import BARE, Entry, size_error
 from setupcheck.quantities.relations import Built, pair, second_order, state
 from setupcheck.quantities.requirements import Stack
 from setupcheck.quantities.shares import contact, torque
@@ -27,7 +27,10 @@ def build(floor: Floor, stack: Stack) -> Built | Open:
     if isinstance(made, Open):
         return made
     missing = made.figure.undetermined()
-    return Open(missing) if missing else made
+    if not missing:
+        return made
+    bare = any(path.endswith(BARE) for path in missing)
+    return Open(missing, "a size without limits: write it as in 66 ±0.01" if bare else "")
 
 
 def _vector(floor: Floor, stack: Stack) -> Built | Open:
