@@ -51,7 +51,7 @@ def _last_resort(found: Review, finding: Finding) -> str:
 def _worked_out(remedy: Remedy, *, inches: bool) -> str:
     """The smallest change in words; empty where nothing simple does it."""
     if remedy.shim is not None:
-        return f"{remedy.shim.words(inches=inches)} ({remedy.shim.path})."
+        return f"{remedy.shim.words(inches=inches)} ({remedy.shim.entry(inches=inches)})."
     if remedy.swap is not None:
         swap = remedy.swap
         return (
