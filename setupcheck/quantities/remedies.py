@@ -165,8 +165,8 @@ def remedies(loaded: LoadedJob, floor: Floor, results: Mapping[str, Result]) -> 
     centres takes that shim; a backlash that only stands beside its limits takes another insert.
     Else in this order: the biggest cause cut back by itself; another datum that the stack already runs through, with the
     dial reading that every requirement then needs; the head's own record in place of typical dividing errors; the two
-    biggest causes cut back.  Causes of bought parts are left
-    alone.  Source: common practice (the fewest changes first).
+    biggest causes cut back.  Causes of bought parts and
+    of the housing come last.  Source: common practice (the fewest changes first).
     """
     trials: dict[tuple[int, str], Swap | None] = {}
     found: dict[str, Remedy] = {}
@@ -216,10 +216,10 @@ def _remedy(loaded: LoadedJob, floor: Floor, result: Result, trials: dict[tuple[
     if own and worst_excess(figure, result.stack.low, result.stack.high) <= 0.0:
         return Remedy(own=own)
     two = _cut_back(loaded, result, most=2)
-    if two or not own:
+    if two:
         return Remedy(two)
     one = _cut_back(loaded, replace(result, figure=figure), most=1)
-    return Remedy(one, own=own) if one else Remedy()
+    return Remedy(one, own=own) if own and one else Remedy(_cut_back(loaded, result, most=1, bought=True))
 
 
 def _gripped(result: Result) -> str:
@@ -233,16 +233,14 @@ def _gripped(result: Result) -> str:
 
 
 def _another_insert(loaded: LoadedJob, floor: Floor, result: Result) -> Wider | None:
-    """The insert that puts a backlash in the middle of its limits, where it fits between them.
+    """The insert that puts a backlash in the middle of its limits, where it fits between them, or just inside its only one.
 
     A gap is as much wider as its insert is, so the first guess is exact but for the rounding; the route is walked again to
     make sure.  None where the step is finer than the width is known, so that measuring it does more.
     Source: quantities.backlash.
     """
     stack, worst = result.stack, result.combined.worst
-    if not isinstance(result.figure, OverATurn) or stack.low is None or stack.high is None:
-        return None
-    if worst.high - worst.low > stack.high - stack.low:
+    if not isinstance(result.figure, OverATurn):
         return None
     found = drive(floor)
     cut = wheel_cut(floor, found) if isinstance(found, Drive) else None
@@ -251,7 +249,13 @@ def _another_insert(loaded: LoadedJob, floor: Floor, result: Result) -> Wider | 
     given, name = cut.cutter.width, cut.cut.cutter
     now, path = middle(given), f"{cut.cutter_path}.width"
     step = 2.54e-3 if loaded.job.units == "in" else 1e-3
-    shift = (stack.low + stack.high - worst.low - worst.high) / 2.0
+    up = stack.low - worst.low if stack.low is not None else -math.inf
+    down = stack.high - worst.high if stack.high is not None else math.inf
+    if up > down:
+        return None  # its span is wider than the limits are apart
+    shift = (
+        (up + down) / 2.0 if math.isfinite(up + down) else up + step / 2.0 if math.isfinite(up) else down - step / 2.0
+    )
     said = stated(loaded, path)
     needed = round((now + shift) / step) * step
     if said is None or abs(shift) <= said.now or needed <= 0.0:
@@ -315,7 +319,7 @@ def _scaled(figure: Figure, cause: Cause, factor: float) -> Figure:
     return replace(figure, pattern=divided)  # type: ignore[type-var]
 
 
-def _cut_back(loaded: LoadedJob, result: Result, *, most: int) -> tuple[Change, ...]:
+def _cut_back(loaded: LoadedJob, result: Result, *, most: int, bought: bool = False) -> tuple[Change, ...]:
     """The biggest causes cut back, at most so many; empty where they cannot bring the stack inside.
 
     Each but the last is cut back as far as care goes (LEAST_KEPT), the last just as far as is needed.
@@ -325,7 +329,7 @@ def _cut_back(loaded: LoadedJob, result: Result, *, most: int) -> tuple[Change, 
     for cause in _by_weight(figure):
         entries = [(path, stated(loaded, path, cause)) for path in cause.paths]
         said = entries[0][1] if entries else None
-        if cause.op is None or said is None or said.now <= 0.0:
+        if said is None or said.now <= 0.0 or cause.mode == "derived" or (cause.op is None and not bought):
             continue
         least, largest = span(figure, cause, said.now, said.guard, low=stack.low, high=stack.high)
         if least == 0.0 and largest < said.now and _down(largest, said.unit) > said.least:

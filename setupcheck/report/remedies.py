@@ -18,7 +18,7 @@ STACK_RULES = ("STACK-001", "STACK-002")
 
 ELSE = "No one or two entries close it. Better work on the biggest causes, or ask for less."
 INSTEAD = {
-    "backlash": "No one or two entries close it. Measure insert, thread and centre distance closer, or allow more backlash.",
+    "backlash": "No one or two entries close it. Measure insert, thread and centre distance closer, or ask for less.",
     "contact-area": "Take a larger cutter circle (cutters, tip_radius), or ask for less.",
     "contact-length": "Take a larger cutter circle (cutters, tip_radius), or ask for less.",
     "torque": "Take more interference, a longer seat or better friction, add a key or pins, or ask for less.",
@@ -74,10 +74,12 @@ def _worked_out(remedy: Remedy, *, inches: bool) -> str:
     for change in remedy.changes:
         unit, digits = finer(change.unit, inches=inches)
         where, what = cause_in_parts(change.cause.key)
-        typical = "the typical " if change.is_typical else ""
-        told.append(
-            f"{where + ': ' if where else ''}bring the {what} from {typical}{show(change.now, unit, digits)} down to "
-            f"{show(change.needed, unit, digits)} ({', '.join((change.path, *change.also))})"
-        )
+        now, needed = (show(value, unit, digits) for value in (change.now, change.needed))
+        places = ", ".join((change.path, *change.also))
+        if change.is_typical:
+            do = f"put your own record of the {what} in place of the typical {now}, up to {needed} ({places})"
+        else:
+            do = f"bring the {what} from {now} down to {needed} ({places})"
+        told.append(f"{where + ': ' if where else ''}{do}")
     text = "; and ".join(told)
     return text[:1].upper() + text[1:] + "." if text else ""

@@ -216,6 +216,40 @@ def test_a_backlash_beside_its_limits_takes_another_insert(job: str, old: str, n
     assert margins(judged(text.replace(new, new.replace(said[2], said[1]))))[key] >= 0.0
 
 
+def test_a_backlash_with_one_limit_takes_the_insert_just_inside_it() -> None:
+    for limit, rule in (("at_least: 60 um", "STACK-002"), ("at_most: 60 um", "STACK-001")):
+        text = wheel(("what: backlash, between: [5 um, 125 um]", f"what: backlash, {limit}"))
+        found, key, _ = failing(text, rule, "backlash")
+        insert = found.remedies[key].insert
+        assert insert is not None
+        margin = margins(judged(text.replace("width: 2.387", f"width: {insert.needed:.3f}")))[key]
+        assert 0.0 <= margin < 0.0015
+
+
+def test_a_typical_hold_gives_way_to_ones_own_record() -> None:
+    old = "centre: {on: hub, by: four-jaw, runout: {at_most: 6 um, measured: 4 um, uncertainty: 1 um}}"
+    text = wheel((old, "centre: {on: hub, by: four-jaw, runout: {device: four-jaw}}"))
+    _, key, remedy = failing(text, "STACK-001", "backlash-swing")
+    said = re.fullmatch(
+        r"Op 50: put your own record of the run-out of hub in four-jaw chuck in place of the typical 10\.0 um, up to "
+        r"(\d\.\d um) \(setups\.50\.hold\.centre\.runout\)\.",
+        remedy,
+    )
+    assert said is not None, remedy
+    assert margins(judged(text.replace("runout: {device: four-jaw}", f"runout: {said[1]}")))[key] >= 0.0
+
+
+def test_a_loosely_known_housing_is_told_when_nothing_else_does_it() -> None:
+    text = wheel(("length: 13.500 ±0.020", "length: 13.500 ±0.120"))
+    _, key, remedy = failing(text, "STACK-001", "mid-plane")
+    said = re.fullmatch(
+        r"Housing: bring the distance of the worm axis from 120\.0 um down to (\d+\.\d) um \(place\.worm_axis\.length\)\.",
+        remedy,
+    )
+    assert said is not None, remedy
+    assert margins(judged(text.replace("±0.120", f"±{float(said[1]) / 1000.0:.4f}")))[key] >= 0.0
+
+
 def test_a_span_wider_than_its_limits_asks_for_no_other_insert() -> None:
     text = wheel(("what: backlash, between: [5 um, 125 um]", "what: backlash, between: [5 um, 60 um]"))
     found, key, remedy = failing(text, "STACK-001", "backlash")
