@@ -30,7 +30,7 @@ LARGEST_SHIFT = 1.0
 """Profile shift [modules] beyond which a miss is rather a wrong number. Source: our screening choice."""
 
 
-def oven(floor: Floor, join: Join, pair: Pair, needed: float, cap: float) -> str | None:
+def oven(floor: Floor, join: Join, pair: Pair, most: float, needed: float, cap: float) -> str | None:
     """Settings of the oven that meet the need and keep the cap, or what else does it. Source: physics.heating.
 
     What the carry takes is worked out for each setting: a hotter hub loses more.
@@ -50,13 +50,14 @@ def oven(floor: Floor, join: Join, pair: Pair, needed: float, cap: float) -> str
     least, wanted = needed, needed + SPARE
     for _ in range(SETTLED):
         least, wanted = for_need(needed, least), for_need(needed + SPARE, wanted)
-    most = cap - error[0]
-    low, high = math.ceil(least), math.floor(most)
+    highest = cap - error[0]
+    low, high = math.ceil(least), math.floor(highest)
     asked = wanted if wanted <= high else for_need(needed + SPARE, float(high))
     expansion = expansion_for("joining", "hub", pair.hub, temperature=100.0).value
-    less = (
-        f"chill the shaft, or take {show(_up((asked - high) * expansion * pair.diameter), 'um', 1)} less interference"
-    )
+    fewer = _up((asked - high) * expansion * pair.diameter)
+    less = f"chill the shaft, or take {show(fewer, 'um', 1)} less interference"
+    if fewer >= most:  # nothing would be left of it
+        less = "chill the shaft, or carry the hub faster"
     if low > high:
         return (
             f"Heat alone does not do it: it takes {low} degC, and {high} degC is the most this hub may be set to. "
@@ -67,7 +68,7 @@ def oven(floor: Floor, join: Join, pair: Pair, needed: float, cap: float) -> str
             f"Set the heat to {math.ceil(asked)} degC ({low} degC is the least, {high} degC the most this material and oven "
             "allow)."
         )
-    if heat.hub is not None and high <= heat.hub <= most:
+    if heat.hub is not None and high <= heat.hub <= highest:
         return f"The heat stands at its most: {less}."
     return f"Set the heat to {high} degC, the most this material and oven allow, and {less}."
 
@@ -223,7 +224,14 @@ ADVICE = (
         "",
         0,
         oven,
-        {"floor": "route.floor", "join": ":", "pair": "fit.pair", "needed": "heat.needed", "cap": "heat.cap"},
+        {
+            "floor": "route.floor",
+            "join": ":",
+            "pair": "fit.pair",
+            "most": "fit.interference_most",
+            "needed": "heat.needed",
+            "cap": "heat.cap",
+        },
         "settings of the oven that do",
     ),
     Quantity("tilt.advice", "setup", "", 0, lead, {"needed": "tilt.needed"}, "the lead angle in all spellings"),

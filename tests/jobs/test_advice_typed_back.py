@@ -91,6 +91,12 @@ def test_heat_that_reaches_its_most_too_early_names_both() -> None:
     assert clears(after, "HEAT-003")
 
 
+def test_no_more_interference_is_taken_than_there_is() -> None:
+    remedy = broken(job(("carry: 12 s", "carry: 3000 s")), "HEAT-001")
+    assert remedy.startswith("Heat alone does not do it")
+    assert remedy.endswith("Chill the shaft, or carry the hub faster.")
+
+
 @pytest.mark.parametrize("journal", ["32.018", "31.990"])
 def test_the_least_interference_that_is_told_carries_the_load(journal: str) -> None:
     """Also of a joint that has no interference at all to begin with."""
