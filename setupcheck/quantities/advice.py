@@ -4,12 +4,16 @@ from __future__ import annotations
 
 import math
 
-from setupcheck.jobfile.setups import Join
+from setupcheck.division.methods import circles_that_fit
+from setupcheck.jobfile.models import Mesh, Toothing
+from setupcheck.jobfile.setups import Join, Setup
 from setupcheck.notation import show, show_angle
 from setupcheck.physics.heating import planned_heat
+from setupcheck.physics.materials import expansion_for
 from setupcheck.quantities.book import Quantity
-from setupcheck.quantities.drive import WheelCut
+from setupcheck.quantities.drive import WheelCut, middle
 from setupcheck.quantities.joining import heat_error
+from setupcheck.quantities.joint_heat import carry_loss
 from setupcheck.quantities.pairing import Pair
 from setupcheck.quantities.shop import Floor
 from setupcheck.quantities.strength import force_held
@@ -18,24 +22,55 @@ SPARE = 20.0
 """Kelvin above the least that HEAT-003 asks for. Source: the rule book."""
 BEST = (1.4, 2.0)
 """Cutter circles that mark best, over the worm's tip radius. Source: own simulation (from memory)."""
+SETTLED = 8
+"""Rounds until setting and loss agree; each leaves a few hundredths of the error. Source: our choice."""
+CLEARANCE = 0.2
+"""Usual clearance under the worm's tip, in modules. Source: common practice; CUTTER-005 takes a little on both sides."""
+LARGEST_SHIFT = 1.0
+"""Profile shift [modules] beyond which a miss is rather a wrong number. Source: our screening choice."""
 
 
-def oven(join: Join, needed: float, cap: float, loss: float) -> str | None:
-    """Settings of the oven that meet the need and keep the cap, or that heat alone does not do it. Source: physics.heating."""
-    error = heat_error(join.heat) if join.heat is not None else None
-    if error is None:
+def oven(floor: Floor, join: Join, pair: Pair, most: float, needed: float, cap: float) -> str | None:
+    """Settings of the oven that meet the need and keep the cap, or what else does it. Source: physics.heating.
+
+    What the carry takes is worked out for each setting: a hotter hub loses more.
+    """
+    heat = join.heat
+    error = heat_error(heat) if heat is not None else None
+    if heat is None or error is None or heat.carry is None:
         return None
-    band = planned_heat(needed=needed, cap=cap, oven_error=error[0], carry_loss=loss)
-    low, high = math.ceil(band.low), math.floor(band.high)
+
+    def for_need(need: float, setting: float) -> float:
+        """Setting that leaves `need` at the shaft, with what a hub of `setting` loses on the way [degC]."""
+        loss = carry_loss(floor, join, pair, setting - error[0], 0)
+        return planned_heat(
+            needed=need, cap=cap, oven_error=error[0], carry_loss=loss if isinstance(loss, float) else 0.0
+        ).low
+
+    least, wanted = needed, needed + SPARE
+    for _ in range(SETTLED):
+        least, wanted = for_need(needed, least), for_need(needed + SPARE, wanted)
+    highest = cap - error[0]
+    low, high = math.ceil(least), math.floor(highest)
+    asked = wanted if wanted <= high else for_need(needed + SPARE, float(high))
+    expansion = expansion_for("joining", "hub", pair.hub, temperature=100.0).value
+    fewer = _up((asked - high) * expansion * pair.diameter)
+    less = f"chill the shaft, or take {show(fewer, 'um', 1)} less interference"
+    if fewer >= most:  # nothing would be left of it
+        less = "chill the shaft, or carry the hub faster"
     if low > high:
         return (
             f"Heat alone does not do it: it takes {low} degC, and {high} degC is the most this hub may be set to. "
-            "Chill the shaft, or take less interference."
+            f"{less[:1].upper()}{less[1:]}."
         )
-    better = min(math.ceil(band.low + SPARE), high)
-    return (
-        f"Set the heat to {better} degC ({low} degC is the least, {high} degC the most this material and oven allow)."
-    )
+    if asked <= high:
+        return (
+            f"Set the heat to {math.ceil(asked)} degC ({low} degC is the least, {high} degC the most this material and oven "
+            "allow)."
+        )
+    if heat.hub is not None and high <= heat.hub <= highest:
+        return f"The heat stands at its most: {less}."
+    return f"Set the heat to {high} degC, the most this material and oven allow, and {less}."
 
 
 def lead(needed: float) -> str:
@@ -61,43 +96,126 @@ def circle(cut: WheelCut, smallest: float, floor: Floor) -> str:
     )
 
 
-def grip(pair: Pair, asked: float, grip: float, friction: float, least: float) -> str | None:
-    """Least interference at 20 degC that carries the load; None where it does already.
+def least_needed(pair: Pair, asked: float, grip: float, friction: float, least: float) -> float | None:
+    """Least interference at 20 degC that carries the load at its warmest [mm].
+
+    least + asked / unit - grip_least, which may be below zero.  Source: quantities.strength, straight in the interference.
+    """
+    unit = force_held(pair, 1.0, friction)
+    return least + asked / unit - grip if unit > 0.0 else None
+
+
+def most_allowed(most: float, reached: float, elastic: float) -> float:
+    """Largest interference at 20 degC that keeps all elastic at its coldest [mm]; at or below zero there is none.
 
     Source: quantities.strength, straight in the interference.
     """
-    wanted = asked / force_held(pair, 1.0, friction)  # in service; what is there may be a clearance
-    if grip >= wanted:
+    return most - (reached - elastic)
+
+
+def grip(
+    pair: Pair, asked: float, grip: float, friction: float, least: float, allowed: float = math.inf, most: float = 0.0
+) -> str | None:
+    """Least interference at 20 degC that carries the load; None where it does already.
+
+    grip  least interference in service;  allowed  what FIT-004 allows of the largest one, `most` [mm]
+    Source: `least_needed`.
+    """
+    needed = least_needed(pair, asked, grip, friction, least)
+    if needed is None or needed <= least:
         return None
-    needed = least + wanted - grip
+    first = f"Bring the least interference from {show(least, 'um', 1)} to {show(_up(needed), 'um', 1)}"
+    if needed >= allowed:
+        return f"{first}, but FIT-004 allows {_at_most(allowed)}: lengthen the seat, thicken the wall, or add a key or pins."
+    beside = f"; FIT-004 allows {_at_most(allowed)}" if most > allowed else ""
     return (
-        f"Bring the least interference from {show(least, 'um', 1)} to {show(_up(needed), 'um', 1)} (closer limits, a larger "
-        "journal, smoother seats), lengthen the seat, or add a key or pins."
+        f"{first} (closer limits, a larger journal, smoother seats), lengthen the seat, or add a key or pins{beside}."
     )
 
 
-def slack(most: float, reached: float, elastic: float) -> str | None:
+def slack(most: float, allowed: float, needed: float = -math.inf, least: float = 0.0) -> str | None:
     """Largest interference at 20 degC that keeps all elastic; None where it is kept already.
 
-    Source: quantities.strength, straight in the interference.
+    needed  what FIT-003 asks of the least one, `least` [mm].  Source: `most_allowed`.
     """
-    if reached <= elastic:
+    if most <= allowed:
         return None
-    allowed = most - (reached - elastic)
     if allowed <= 0.0:
         return (
             "No interference is small enough for this wall at the coldest: take a thicker wall or a stronger material."
         )
-    return (
-        f"Bring the largest interference from {show(most, 'um', 1)} down to {show(math.floor(allowed * 1e4) / 1e4, 'um', 1)} "
-        "(closer limits, a smaller journal), or take a thicker wall or a stronger material."
-    )
+    first = f"Bring the largest interference from {show(most, 'um', 1)} down to {show(_down(allowed), 'um', 1)}"
+    if needed >= allowed:
+        return (
+            f"{first}, but FIT-003 asks for at least {show(_up(needed), 'um', 1)}: lengthen the seat, thicken the wall, or "
+            "add a key or pins."
+        )
+    beside = f"; FIT-003 asks for at least {show(_up(needed), 'um', 1)}" if needed > least else ""
+    return f"{first} (closer limits, a smaller journal), or take a thicker wall or a stronger material{beside}."
+
+
+def _at_most(allowed: float) -> str:
+    return f"at most {show(_down(allowed), 'um', 1)}" if allowed > 0.0 else "none at all"
+
+
+def depth(cut: WheelCut, floor: Floor) -> str | None:
+    """Depth from the touched surface that leaves the usual clearance. Source: touched/2 - (a - ra1 - 0.2 m), geometry."""
+    d = cut.drive
+    fed = cut.root + (cut.cut.depth or 0.0) - (d.centre_distance - d.tip_diameter / 2.0 - CLEARANCE * d.module)
+    if fed <= 0.0:
+        return None
+    unit, digits = ("in", 4) if floor.loaded.job.units == "in" else ("mm", 3)
+    passes = f"; the passes must add up to it ({cut.path}.passes)" if cut.cut.passes else ""
+    return f"Feed {show(fed, unit, digits)} from that surface ({cut.path}.depth){passes}."
+
+
+def shift(floor: Floor, mesh: Mesh) -> str | None:
+    """The profile shift that closes the centre distance, or that none does. Source: a = (d1 + d2)/2 + x m (from memory)."""
+    worm, ref = floor.loaded.job.worm, floor.loaded.ref(mesh.wheel)
+    node = floor.loaded.job.parts[ref.part].surfaces[ref.surface]
+    if worm is None or worm.axial_module is None or worm.reference_diameter is None or mesh.centre_distance is None:
+        return None
+    if not isinstance(node, Toothing):
+        return None
+    plain = (worm.reference_diameter + node.count * worm.axial_module) / 2.0
+    closing = (middle(mesh.centre_distance) - plain) / worm.axial_module
+    unit, digits = ("in", 4) if floor.loaded.job.units == "in" else ("mm", 3)
+    if abs(closing) > LARGEST_SHIFT:
+        return f"Measure again: (d1 + d2)/2 is {show(plain, unit, digits)}, and no usual shift makes up for the rest."
+    return f"Write shift: {closing:.3f} under mesh (in modules), or measure again: (d1 + d2)/2 is {show(plain, unit, digits)}."
+
+
+def dividing_circle(setup: Setup, circles: str, worm_ratio: int, count: int) -> str:
+    """Hole circles that close, on this head or on another plate. Source: exact fractions."""
+    path = f"setups.{setup.op}.divide.circle"
+    if circles != "none":
+        return f"Take a circle of {circles.replace(', ', ' or ')} holes ({path})."
+    others = ", ".join(str(c) for c in circles_that_fit(worm_ratio, count))
+    if others:
+        return (
+            f"None of this head's circles closes: get a plate with a circle of {others} holes, or divide another way."
+        )
+    return "No usual circle closes: divide another way, by an encoder or a plate made for this count."
 
 
 def _up(value: float) -> float:
     """Rounded up to a tenth of a micrometre, so that the printed value does it."""
     return math.ceil(value * 1e4 - 1e-6) / 1e4
 
+
+def _down(value: float) -> float:
+    """Rounded down to a tenth of a micrometre, likewise."""
+    return math.floor(value * 1e4 + 1e-6) / 1e4
+
+
+_HELD = {
+    "pair": "fit.pair",
+    "asked": "fit.force_asked",
+    "grip": "fit.grip_least",
+    "friction": "fit.friction",
+    "least": "fit.interference_least",
+}
+_MOST = {"most": "fit.interference_most"}
 
 ADVICE = (
     Quantity(
@@ -106,7 +224,14 @@ ADVICE = (
         "",
         0,
         oven,
-        {"join": ":", "needed": "heat.needed", "cap": "heat.cap", "loss": "heat.carry_loss"},
+        {
+            "floor": "route.floor",
+            "join": ":",
+            "pair": "fit.pair",
+            "most": "fit.interference_most",
+            "needed": "heat.needed",
+            "cap": "heat.cap",
+        },
         "settings of the oven that do",
     ),
     Quantity("tilt.advice", "setup", "", 0, lead, {"needed": "tilt.needed"}, "the lead angle in all spellings"),
@@ -120,19 +245,32 @@ ADVICE = (
         "cutter circles that do",
     ),
     Quantity(
+        "fit.least_needed",
+        "join",
+        "um",
+        1,
+        least_needed,
+        _HELD,
+        "least interference that carries the load",
+    ),
+    Quantity(
+        "fit.most_allowed",
+        "join",
+        "um",
+        1,
+        most_allowed,
+        {**_MOST, "reached": "fit.grip_most", "elastic": "fit.elastic"},
+        "largest interference that stays elastic",
+    ),
+    Quantity(
         "fit.advice_grip",
         "join",
         "",
         0,
         grip,
-        {
-            "pair": "fit.pair",
-            "asked": "fit.force_asked",
-            "grip": "fit.grip_least",
-            "friction": "fit.friction",
-            "least": "fit.interference_least",
-        },
-        "least interference that carries the load",
+        {**_HELD, "allowed": "settled fit.most_allowed", **_MOST},
+        "how to come to the interference that carries the load",
+        {"allowed": math.inf},
     ),
     Quantity(
         "fit.advice_slack",
@@ -140,7 +278,40 @@ ADVICE = (
         "",
         0,
         slack,
-        {"most": "fit.interference_most", "reached": "fit.grip_most", "elastic": "fit.elastic"},
-        "largest interference that stays elastic",
+        {
+            **_MOST,
+            "allowed": "fit.most_allowed",
+            "needed": "settled fit.least_needed",
+            "least": "fit.interference_least",
+        },
+        "how to come to the interference that stays elastic",
+        {"needed": -math.inf},
+    ),
+    Quantity(
+        "cutter.advice_depth",
+        "cut",
+        "",
+        0,
+        depth,
+        {"cut": "cutter.wheel_cut", "floor": "route.floor"},
+        "depth that leaves the usual clearance",
+    ),
+    Quantity(
+        "mesh.advice",
+        "mesh",
+        "",
+        0,
+        shift,
+        {"floor": "route.floor", "mesh": ":"},
+        "profile shift that closes the centre distance",
+    ),
+    Quantity(
+        "divide.advice",
+        "setup",
+        "",
+        0,
+        dividing_circle,
+        {"setup": ":", "circles": "divide.circles", "worm_ratio": "divide.worm_ratio", "count": "divide.count"},
+        "hole circles that close, as advice",
     ),
 )

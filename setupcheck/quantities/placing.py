@@ -28,6 +28,13 @@ class Shim:
     now: float
     needed: float
 
+    def entry(self, *, inches: bool) -> str:
+        """Where to write it; what to type, where no spacer stands there yet. The limits are an example."""
+        if self.names or self.needed < PLAIN:
+            return self.path
+        length = f"{show(self.needed, 'in', 5)[:-3]} ±0.0001" if inches else f"{show(self.needed, 'mm', 4)[:-3]} ±0.003"
+        return f"{self.path}, spacers: [{{name: shim, length: {length}}}], with its own limits"
+
     def words(self, *, inches: bool) -> str:
         """What to do, as one sentence."""
         unit, digits = ("in", 5) if inches else ("mm", 4)
@@ -116,7 +123,7 @@ def shim(floor: Floor, offset: float) -> str | None:
     if found is None or abs(offset) < PLAIN:
         return None
     inches = floor.loaded.job.units == "in"
-    return f"{found.words(inches=inches)} ({found.path})."
+    return f"{found.words(inches=inches)} ({found.entry(inches=inches)})."
 
 
 PLACE = (

@@ -11,8 +11,10 @@ from setupcheck.jobfile.models import Deviation, Dimension
 from setupcheck.jobfile.reading import LoadedJob
 from setupcheck.jobfile.setups import Setup
 from setupcheck.ledger.causes import Cause
-from setupcheck.ledger.figures import Figure, MidPlane, real_pushes
+from setupcheck.ledger.figures import Figure, MidPlane, OverATurn, real_pushes
+from setupcheck.ledger.route import Pattern
 from setupcheck.quantities.book import Open
+from setupcheck.quantities.drive import Drive, WheelCut, drive, middle, wheel_cut
 from setupcheck.quantities.gates import (
     FINE,
     guard_of,
@@ -30,11 +32,15 @@ from setupcheck.quantities.requirements import read_stack
 from setupcheck.quantities.route import walk
 from setupcheck.quantities.shop import Floor
 from setupcheck.quantities.stacks import build
-from setupcheck.quantities.typical import typical
+from setupcheck.quantities.typical import Typical, table, typical
 from setupcheck.record import record
 
 LEAST_KEPT = 0.2
 """Share of a bound that better work leaves when one change is not enough. Source: our screening choice."""
+
+RECORD_BETTER = 3.0
+"""How much better than a typical value a device's own record may turn out to be. Source: our screening choice."""
+GRIPS_FIRST = ".join.grips_first"
 
 
 @record
@@ -43,6 +49,7 @@ class Change:
 
     unit "um" or "arcsec"; values in base units
     also  other entries that speak of the same kept device and change with it
+    is_typical  `now` is a typical value that the entry leaves to its device
     """
 
     cause: Cause
@@ -51,6 +58,7 @@ class Change:
     needed: float
     unit: str
     also: tuple[str, ...] = ()
+    is_typical: bool = False
 
 
 @record
@@ -81,8 +89,16 @@ def _deviation(loaded: LoadedJob, path: str) -> Deviation | None:
     return node if isinstance(node, Deviation) else None
 
 
-def stated(loaded: LoadedJob, path: str) -> Stated | None:
+def _row(cause: Cause) -> Typical | None:
+    """The typical value a cause was made with, if it was."""
+    return next((row for row in table().values() if row.name == cause.rests_on), None) if cause.rests_on else None
+
+
+def stated(loaded: LoadedJob, path: str, cause: Cause | None = None) -> Stated | None:
     """The entry a cause rests on, a device alone by its typical value; None where it is not one number."""
+    row = _row(cause) if cause is not None else None
+    if row is not None and ".divide." not in path:  # those of a division come together, as `_recorded` has them
+        return Stated(row.value, "um")
     node = _node(loaded, path)
     if isinstance(node, Deviation):
         value = node.measured if node.measured is not None else node.at_most
@@ -118,21 +134,39 @@ class Swap:
 
 
 @record
+class Wider:
+    """Another insert: its width now and as it should be [mm], which moves the backlash and not its span."""
+
+    path: str
+    now: float
+    needed: float
+
+
+@record
 class Remedy:
-    """What to change: single entries, the datum of one hold, or a shim. All empty where nothing simple does it."""
+    """What to change: single entries, the datum of one hold, a shim, an insert. All empty where nothing simple does it.
+
+    grip    the joint's entry that says where its hub bites first
+    own     the dividing head's own record in place of typical values: one change for each of its errors
+    """
 
     changes: tuple[Change, ...] = ()
     swap: Swap | None = None
     shim: Shim | None = None
+    grip: str = ""
+    insert: Wider | None = None
+    own: tuple[Change, ...] = ()
 
 
 def remedies(loaded: LoadedJob, floor: Floor, results: Mapping[str, Result]) -> dict[str, Remedy]:
     """The smallest change for every stack outside its limit, one that serves all of them where they name the same entry.
 
-    A mid-plane that another shim centres takes that shim.
+    A length that only the gap behind a cooling hub spoils lets the shoulder end grip first; a mid-plane that another shim
+    centres takes that shim; a backlash that only stands beside its limits takes another insert.
     Else in this order: the biggest cause cut back by itself; another datum that the stack already runs through, with the
-    dial reading that every requirement then needs; the two biggest causes cut back.  Causes of bought parts are left
-    alone.  Source: common practice (the fewest changes first).
+    dial reading that every requirement then needs; the head's own record in place of typical dividing errors; the two
+    biggest causes cut back.  Causes of bought parts and
+    of the housing come last.  Source: common practice (the fewest changes first).
     """
     trials: dict[tuple[int, str], Swap | None] = {}
     found: dict[str, Remedy] = {}
@@ -141,12 +175,13 @@ def remedies(loaded: LoadedJob, floor: Floor, results: Mapping[str, Result]) -> 
             found[key] = _remedy(loaded, floor, result, trials)
     least: dict[str, float] = {}
     for one in found.values():
-        for change in one.changes:
+        for change in (*one.changes, *one.own):
             least[change.path] = min(change.needed, least.get(change.path, change.needed))
-    return {
-        key: replace(one, changes=tuple(replace(c, needed=least[c.path]) for c in one.changes))
-        for key, one in found.items()
-    }
+
+    def together(changes: tuple[Change, ...]) -> tuple[Change, ...]:
+        return tuple(replace(c, needed=least[c.path]) for c in changes)
+
+    return {key: replace(one, changes=together(one.changes), own=together(one.own)) for key, one in found.items()}
 
 
 def _shimmed(floor: Floor, result: Result) -> Shim | None:
@@ -162,19 +197,129 @@ def _shimmed(floor: Floor, result: Result) -> Shim | None:
 
 
 def _remedy(loaded: LoadedJob, floor: Floor, result: Result, trials: dict[tuple[int, str], Swap | None]) -> Remedy:
+    grip = _gripped(result)
+    if grip:
+        return Remedy(grip=grip)
     shim = _shimmed(floor, result)
     if shim is not None:
         return Remedy(shim=shim)
+    insert = _another_insert(loaded, floor, result)
+    if insert is not None:
+        return Remedy(insert=insert)
     one = _cut_back(loaded, result, most=1)
     if one:
         return Remedy(one)
     swap = next(_swaps(loaded, result, trials), None)
     if swap is not None:
         return Remedy(swap=swap)
-    return Remedy(_cut_back(loaded, result, most=2))
+    own, figure = _recorded(result)
+    if own and worst_excess(figure, result.stack.low, result.stack.high) <= 0.0:
+        return Remedy(own=own)
+    two = _cut_back(loaded, result, most=2)
+    if two:
+        return Remedy(two)
+    one = _cut_back(loaded, replace(result, figure=figure), most=1)
+    return Remedy(one, own=own) if own and one else Remedy(_cut_back(loaded, result, most=1, bought=True))
 
 
-def _cut_back(loaded: LoadedJob, result: Result, *, most: int) -> tuple[Change, ...]:
+def _gripped(result: Result) -> str:
+    """The entry that says where a shrunk hub bites, where its gap at the shoulder alone puts the stack outside."""
+    stack, figure, path = result.stack, result.figure, ""
+    for cause in origins(figure):
+        mine = next((p for p in cause.paths if p.endswith(GRIPS_FIRST)), "")
+        if mine and not path:
+            figure, path = with_cause(figure, cause, cause.scaled(0.0)), mine
+    return path if path and worst_excess(figure, stack.low, stack.high) <= 0.0 else ""
+
+
+def _another_insert(loaded: LoadedJob, floor: Floor, result: Result) -> Wider | None:
+    """The insert that puts a backlash in the middle of its limits, where it fits between them, or just inside its only one.
+
+    A gap is as much wider as its insert is, so the first guess is exact but for the rounding; the route is walked again to
+    make sure.  None where the step is finer than the width is known, so that measuring it does more.
+    Source: quantities.backlash.
+    """
+    stack, worst = result.stack, result.combined.worst
+    if not isinstance(result.figure, OverATurn):
+        return None
+    found = drive(floor)
+    cut = wheel_cut(floor, found) if isinstance(found, Drive) else None
+    if not isinstance(cut, WheelCut) or cut.cut.cutter is None or cut.cutter.width is None:
+        return None
+    given, name = cut.cutter.width, cut.cut.cutter
+    now, path = middle(given), f"{cut.cutter_path}.width"
+    step = 2.54e-3 if loaded.job.units == "in" else 1e-3
+    up = stack.low - worst.low if stack.low is not None else -math.inf
+    down = stack.high - worst.high if stack.high is not None else math.inf
+    if up > down:
+        return None  # its span is wider than the limits are apart
+    shift = (
+        (up + down) / 2.0 if math.isfinite(up + down) else up + step / 2.0 if math.isfinite(up) else down - step / 2.0
+    )
+    said = stated(loaded, path)
+    needed = round((now + shift) / step) * step
+    if said is None or abs(shift) <= said.now or needed <= 0.0:
+        return None
+    key = "measured" if given.measured is not None else "nominal"
+    moved = given.model_copy(update={key: (getattr(given, key) or 0.0) + needed - now})
+    cutters = {**loaded.job.cutters, name: cut.cutter.model_copy(update={"width": moved})}
+    other = replace(loaded, job=loaded.job.model_copy(update={"cutters": cutters}))
+    try:
+        built = build(walk(other), stack)
+    except JobError:
+        return None
+    if isinstance(built, Open) or worst_excess(built.figure, stack.low, stack.high) > 0.0:
+        return None
+    return Wider(path, now, needed)
+
+
+def _recorded(result: Result) -> tuple[tuple[Change, ...], Figure]:
+    """All typical errors of one division made smaller alike, to what the head's own record has to show; the figure then.
+
+    All of them, because a record that states one takes the place of every typical value.  By RECORD_BETTER where even that
+    is not enough; nothing where no typical error of a division is in it.
+    """
+    stack, figure = result.stack, result.figure
+    each = [(c, row) for c in origins(figure) if any(".divide." in p for p in c.paths) and (row := _row(c)) is not None]
+    if not each:
+        return (), figure
+    each = [(cause, row) for cause, row in each if cause.op == each[0][0].op]
+
+    def at(factor: float) -> Figure:
+        one = figure
+        for cause, _ in each:
+            one = _scaled(one, cause, factor)
+        return one
+
+    inside, outside = 1.0 / RECORD_BETTER, 1.0
+    while outside - inside > 1e-9:  # an end that is not inside stays where it is
+        half = (inside + outside) / 2.0
+        inside, outside = (half, outside) if worst_excess(at(half), stack.low, stack.high) <= 0.0 else (inside, half)
+    changes = tuple(
+        Change(cause, cause.paths[0], row.value, _down(row.value * inside, "arcsec"), "arcsec", is_typical=True)
+        for cause, row in each
+    )
+    return changes, at(inside)
+
+
+def _scaled(figure: Figure, cause: Cause, factor: float) -> Figure:
+    """The figure with one cause so many times as large, also where it sits in the division of teeth or holes."""
+    new, figure = cause.scaled(factor), with_cause(figure, cause, cause.scaled(factor))
+    pattern = getattr(figure, "pattern", None)
+    if not isinstance(pattern, Pattern):
+        return figure
+    divided = replace(
+        pattern,
+        periodic=tuple(replace(p, cause=new) if p.cause == cause else p for p in pattern.periodic),
+        scatter=tuple(
+            replace(s, cause=new, bound=s.bound * factor) if s.cause == cause else s for s in pattern.scatter
+        ),
+        drift=tuple(new if c == cause else c for c in pattern.drift),
+    )
+    return replace(figure, pattern=divided)  # type: ignore[type-var]
+
+
+def _cut_back(loaded: LoadedJob, result: Result, *, most: int, bought: bool = False) -> tuple[Change, ...]:
     """The biggest causes cut back, at most so many; empty where they cannot bring the stack inside.
 
     Each but the last is cut back as far as care goes (LEAST_KEPT), the last just as far as is needed.
@@ -182,9 +327,9 @@ def _cut_back(loaded: LoadedJob, result: Result, *, most: int) -> tuple[Change, 
     stack, figure = result.stack, result.figure
     changes: list[Change] = []
     for cause in _by_weight(figure):
-        entries = [(path, stated(loaded, path)) for path in cause.paths]
+        entries = [(path, stated(loaded, path, cause)) for path in cause.paths]
         said = entries[0][1] if entries else None
-        if cause.op is None or said is None or said.now <= 0.0:
+        if said is None or said.now <= 0.0 or cause.mode == "derived" or (cause.op is None and not bought):
             continue
         least, largest = span(figure, cause, said.now, said.guard, low=stack.low, high=stack.high)
         if least == 0.0 and largest < said.now and _down(largest, said.unit) > said.least:
@@ -194,7 +339,7 @@ def _cut_back(loaded: LoadedJob, result: Result, *, most: int) -> tuple[Change, 
                 return ()
             continue
         changes += _changes(loaded, cause, entries, LEAST_KEPT)
-        figure = with_cause(figure, cause, cause.scaled(LEAST_KEPT))
+        figure = _scaled(figure, cause, LEAST_KEPT)
     return ()
 
 
@@ -203,7 +348,7 @@ def _by_weight(figure: Figure) -> list[Cause]:
     full = worst_excess(figure, None, 0.0) if not figure.signed else worst_excess(figure, 0.0, 0.0)
 
     def weight(cause: Cause) -> float:
-        gone = with_cause(figure, cause, cause.scaled(0.0))
+        gone = _scaled(figure, cause, 0.0)
         return full - (worst_excess(gone, None, 0.0) if not figure.signed else worst_excess(gone, 0.0, 0.0))
 
     return sorted(origins(figure), key=weight, reverse=True)
@@ -213,7 +358,7 @@ def _changes(loaded: LoadedJob, cause: Cause, entries: list[tuple[str, Stated | 
     """One change for each entry the cause rests on (two for a zero along x and y), with the twins of a kept device."""
     also = tuple(path for path in _twins(loaded, entries[0][0]) if cause.shared)
     return [
-        Change(cause, path, said.now, _down(said.now * factor, said.unit), said.unit, also)
+        Change(cause, path, said.now, _down(said.now * factor, said.unit), said.unit, also, bool(cause.rests_on))
         for path, said in entries
         if said is not None
     ]

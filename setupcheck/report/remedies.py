@@ -16,33 +16,70 @@ if TYPE_CHECKING:
 STACK_RULES = ("STACK-001", "STACK-002")
 """Rules whose remedy is worked out from the stack itself."""
 
+ELSE = "No one or two entries close it. Better work on the biggest causes, or ask for less."
+INSTEAD = {
+    "backlash": "No one or two entries close it. Measure insert, thread and centre distance closer, or ask for less.",
+    "contact-area": "Take a larger cutter circle (cutters, tip_radius), or ask for less.",
+    "contact-length": "Take a larger cutter circle (cutters, tip_radius), or ask for less.",
+    "torque": "Take more interference, a longer seat or better friction, add a key or pins, or ask for less.",
+}
+"""What is left of requirements that no holding changes."""
+
 
 def remedy_in_words(found: Review, finding: Finding) -> str:
     """What to do about a finding; of an open one, what to fill."""
     if finding.verdict in ("open", "pass"):
         return ""
     if finding.rule in STACK_RULES and finding.key in found.remedies:
-        return _worked_out(found.remedies[finding.key], inches=found.book.inches) or finding.remedy
+        told = _worked_out(found.remedies[finding.key], inches=found.book.inches)
+        return told or _last_resort(found, finding)
     return finding.remedy
+
+
+def _last_resort(found: Review, finding: Finding) -> str:
+    """What is left where nothing simple does it; one holding helps only where several operations have their share."""
+    result = found.results.get(finding.key)
+    if result is None:
+        return finding.remedy
+    instead = INSTEAD.get(result.stack.require.what)
+    if instead is not None:
+        return instead
+    ops = {share.cause.op for share in result.combined.shares} - {None}
+    return finding.remedy if len(ops) > 1 else ELSE
 
 
 def _worked_out(remedy: Remedy, *, inches: bool) -> str:
     """The smallest change in words; empty where nothing simple does it."""
     if remedy.shim is not None:
-        return f"{remedy.shim.words(inches=inches)} ({remedy.shim.path})."
+        return f"{remedy.shim.words(inches=inches)} ({remedy.shim.entry(inches=inches)})."
     if remedy.swap is not None:
         swap = remedy.swap
         return (
             f"Hold op {swap.op} on {swap.on} instead of {swap.was}, as op {swap.like} does, so that what lies between the two "
             f"drops out, and true it to {on_the_dial(swap.reading, inches=inches)} ({swap.path})."
         )
+    if remedy.grip:
+        return f"Let the shoulder end grip first ({remedy.grip}: shoulder-end)."
+    if remedy.insert is not None:
+        unit, digits = ("in", 4) if inches else ("mm", 3)
+        wide, now = (show(value, unit, digits) for value in (remedy.insert.needed, remedy.insert.now))
+        return f"Make the insert {wide} wide instead of {now} ({remedy.insert.path})."
     told = []
+    if remedy.own:
+        each = (
+            f"{cause_in_parts(c.cause.key)[1]} up to {show(c.needed, c.unit, 1)} instead of {show(c.now, c.unit, 1)} ({c.path})"
+            for c in remedy.own
+        )
+        told.append("put the head's own record in place of the typical values: " + ", ".join(each))
     for change in remedy.changes:
         unit, digits = finer(change.unit, inches=inches)
         where, what = cause_in_parts(change.cause.key)
-        told.append(
-            f"{where + ': ' if where else ''}bring the {what} from {show(change.now, unit, digits)} down to "
-            f"{show(change.needed, unit, digits)} ({', '.join((change.path, *change.also))})"
-        )
+        now, needed = (show(value, unit, digits) for value in (change.now, change.needed))
+        places = ", ".join((change.path, *change.also))
+        if change.is_typical:
+            do = f"put your own record of the {what} in place of the typical {now}, up to {needed} ({places})"
+        else:
+            do = f"bring the {what} from {now} down to {needed} ({places})"
+        told.append(f"{where + ': ' if where else ''}{do}")
     text = "; and ".join(told)
     return text[:1].upper() + text[1:] + "." if text else ""

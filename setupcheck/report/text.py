@@ -117,8 +117,9 @@ def _finding(found: Review, finding: Finding) -> Iterator[str]:
         yield from _rests_on(finding)
         return
     result = found.results.get(finding.key)
-    if result is not None and finding.rule.startswith("STACK") and result.combined.shares:
-        yield from wrap("Biggest: " + "; ".join(_share(found, result, 3)) + ".", first="      ", rest="      ")
+    biggest = _share(found, result, 3) if result is not None and finding.rule.startswith("STACK") else []
+    if biggest:
+        yield from wrap("Biggest: " + "; ".join(biggest) + ".", first="      ", rest="      ")
     remedy = remedy_in_words(found, finding)
     if remedy and finding.verdict != "waived":
         yield from wrap(f"Do: {remedy}", first="      ", rest="          ")
@@ -145,10 +146,27 @@ def _rests_on(finding: Finding) -> Iterator[str]:
 
 
 def _margin(finding: Finding) -> str:
-    if finding.margin is None or isinstance(finding.value, str):
+    """How far inside or outside a limit; nothing of a word, and nothing beyond a count, whose message says both numbers."""
+    if finding.margin is None or finding.value is None or isinstance(finding.value, str):
         return ""
-    shown = show(abs(finding.margin), finding.unit or "1", finding.digits)
-    return f" Margin {shown}." if finding.margin >= 0 else f" Over by {shown}."
+    unit = {"degC": "K"}.get(finding.unit, finding.unit or "1")  # a difference of temperatures
+    if finding.margin >= 0.0:
+        return f" Margin {show(finding.margin, unit, finding.digits)}."
+    if unit == "1" and finding.digits == 0:
+        return ""
+    shown = _seen(-finding.margin, unit, finding.digits)
+    low = finding.limit[0] if isinstance(finding.limit, tuple) else finding.limit
+    short = isinstance(low, float | int) and finding.value < low
+    return f" {'Short' if short else 'Over'} by {shown}." if shown else ""
+
+
+def _seen(size: float, unit: str, digits: int) -> str:
+    """A size above zero with up to three decimals more, until it does not read as zero; empty where it still does."""
+    for more in range(4):
+        text = show(size, unit, digits + more)
+        if any(c in "123456789" for c in text):
+            return text
+    return ""
 
 
 def _share(found: Review, result: Result, most: int) -> list[str]:

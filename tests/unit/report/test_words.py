@@ -94,4 +94,4 @@ def test_a_remedy_names_the_operation_the_error_and_both_values_with_their_unit(
 def test_a_wrong_hole_circle_is_told_by_how_far_a_step_misses_a_whole_hole() -> None:
     report = flat(as_text(reviewed(changed(WHEEL, ("circle: 18", "circle: 20")))))
     assert "each step comes out 0.111 of a hole off a whole hole" in report
-    assert "`setupcheck working JOB divide.circles` lists them" in report
+    assert "Take a circle of 18 or" in report
