@@ -21,12 +21,13 @@ from setupcheck.yamlfile.tree import Data, Node, Path, Place, Tree
 LOADER = getattr(yaml, "CBaseLoader", yaml.BaseLoader)  # libyaml where it is installed: ten times faster
 
 
-def parse(text: str, file: str, *, collect: bool = False) -> Tree:
+def parse(text: str, file: str, *, collect: bool = False, if_empty: str = "Write key: value on its lines") -> Tree:
     """The data of a YAML text, with places, under the scalar policy of `scalars`.
 
     file     name for messages
     collect  put wrong values (number look-alikes, keys written twice) into `Tree.problems` and go on, so that a reader
              of the data can show its own beside them (`Tree.together`); without it they are raised at once
+    if_empty what to write into a text that holds nothing
     Raises JobError with every problem that was found before the text stopped making sense.
 
     >>> tree = parse("hold:\\n  runout: 10 um\\n", "job.yaml")
@@ -39,7 +40,7 @@ def parse(text: str, file: str, *, collect: bool = False) -> Tree:
     walk = _Walk(without_odd_characters(text), lines)
     walk.read(known={problem.line for problem in odd})
     if not odd and not walk.broken and walk.data is None:
-        odd.append(Problem("", 0, 0, 0, "the file holds no values", "Write key: value on its lines"))
+        odd.append(Problem("", 0, 0, 0, "the file holds no values", if_empty))
     tree = Tree(walk.data, file, lines, (), walk.root)
     broken = odd + [replace(problem, path=tree.dotted(path, missing=True)) for problem, path in walk.broken]
     wrong = [replace(problem, path=tree.dotted(path, missing=True)) for problem, path in walk.wrong]
