@@ -14,7 +14,7 @@ from pydantic import BaseModel, TypeAdapter, ValidationError, WithJsonSchema
 from pydantic_core import ErrorDetails
 
 from setupcheck.errors import JobError, Problem
-from setupcheck.jobfile import cuts, directions, gauges, given, joints, names, reach, sense
+from setupcheck.jobfile import cuts, directions, gauges, given, joints, names, reach, sense, shapes
 from setupcheck.jobfile.drawing import drawing_of
 from setupcheck.jobfile.examples import ENTRIES, SHAPES, TO_BEGIN
 from setupcheck.jobfile.models import Require, Surface
@@ -110,7 +110,8 @@ def read_job_text(text: str, file: str) -> LoadedJob:
         raise JobError(
             file, tree.lines, (Problem("", 1, 1, 1, "a job file is a map of keys", "Start with setupcheck: 1"),)
         )
-    problems: list[Problem] = []
+    tree, problems = shapes.meant(tree)
+    assert isinstance(tree.data, dict)
     job: Job | None = None
     try:
         job = Job.model_validate(tree.data, context={"units": tree.data.get("units")})

@@ -57,3 +57,83 @@ def test_a_part_without_surfaces_is_told_what_one_looks_like() -> None:
         "Write at least one, as in bore: {kind: bore, diameter: 32 H6, from: 0, to: 26}"
     ] == says(text)
     assert "no part is written here" == refused("setupcheck: 1\ntitle: x\nunits: mm\nparts: {}\n").problems[0].problem
+
+
+SETUPS_AS_A_MAP = (
+    RING.replace("  - op: 10\n", "  10:\n")
+    .replace("  - op: 20\n", "  20:\n")
+    .replace("machine: head-B", "machine: head-C")
+)
+
+
+def test_setups_written_by_their_numbers_are_told_once_and_read_on() -> None:
+    assert [
+        "18:1 setups | setups is a list. Write each entry under it with a dash: `- op: 10`",
+        "27:14 setups.20.machine | there is no machine 'head-C'. Did you mean head-B?",
+    ] == says(SETUPS_AS_A_MAP)
+
+
+def test_one_setup_without_its_dash_and_one_requirement_without_its_own_are_told_and_read_on() -> None:
+    text = SKELETON.replace("  - op: 10", "    op: 10").replace("by: three-jaw", "by: four-jaws")
+    assert [
+        "14:1 setups | setups is a list. Write each entry under it with a dash: `- op: 10`",
+        "19:29 setups.10.hold.centre.by | 'four-jaws' is not known here. Did you mean four-jaw?",
+    ] == says(text)
+    asked = "  run-out: {of: hub.bore, about: hub.rum, at_most: 10 um}\n"
+    assert [
+        "22:1 require | require is a list. "
+        "Write each entry under it with a dash: `- {what: run-out, of: wheel.bore, at_most: 20 um}`",
+        "23:34 require[1].about | part 'hub' has no surface 'rum'. Did you mean hub.rim?",
+    ] == says(SKELETON[: SKELETON.index("  - {what")] + asked)
+
+
+def test_names_written_as_a_list_are_told_once_for_each_list_and_read_on() -> None:
+    text = SKELETON
+    for name in ("bar: ", "sawn:", "rim: ", "bore:", "lathe-A:"):
+        text = text.replace(f"  {name} {{", f"  - {name} {{")
+    text = (
+        text.replace("  hub:\n", "  - name: hub\n")
+        .replace("32 H7", "83")
+        .replace("cut: {rim: {}, bore: {}}", "cut: [rim, bore]")
+    )
+    assert [
+        "4:1 parts | parts is a map, not a list. Write each name, then a colon and its entry, as in hub: {…}",
+        "7:5 parts.hub.surfaces | surfaces is a map, not a list. "
+        "Write each name, then a colon and its entry, as in bar: {…}",
+        "11:38 parts.hub.surfaces.bore.diameter | a bore of 83 mm leaves nothing of rim, "
+        "which is 80 mm from 0 mm to 20 mm. Write a smaller bore, or removes: [rim] at the cut that takes it away",
+        "12:1 machines | machines is a map, not a list. "
+        "Write each name, then a colon and its entry, as in lathe-A: {…}",
+        "21:5 setups.10.cut | cut is a map, not a list. Write the surface, then a colon and its entry, as in rim: {}",
+    ] == says(text)
+
+
+def test_keys_of_an_empty_section_at_the_left_margin_are_read_as_its_own() -> None:
+    assert [
+        "36:1 worm | starts belongs to worm. Indent it under worm:",
+    ] == says(spoilt("require:\n", "worm:\nstarts: 1\nrequire:\n"))
+    assert [
+        "36:1 worm | starts and hand belong to worm. Indent them under worm:",
+        "37:7 worm.hand | 'rigt' is not known here. Did you mean right?",
+    ] == says(spoilt("require:\n", "worm:\nstarts: 1\nhand: rigt\nrequire:\n"))
+    assert [
+        "5:1 parts | hub belongs to parts. Indent it under parts:",
+    ] == says(SKELETON.replace("  hub:\n", "hub:\n"))
+
+
+def test_a_key_below_a_section_that_is_filled_is_an_unknown_key() -> None:
+    (problem,) = refused(spoilt("require:\n", "worm: {hand: right}\nstarts: 1\nrequire:\n")).problems
+    assert "'starts' is not a key of this entry" == problem.problem
+
+
+def test_a_forgotten_dash_is_told_in_one_line_and_what_follows_is_read_as_its_own_entry() -> None:
+    text = spoilt("  - op: 20\n", "    op: 20   # the teeth\n").replace("machine: head-B", "machine: head-C")
+    assert [
+        "26:5 setups.20.op | a '- ' is missing before op: 20. Write - op: 20",
+        "27:14 setups.20.machine | there is no machine 'head-C'. Did you mean head-B?",
+    ] == says(text)
+
+
+def test_a_number_written_twice_in_one_entry_is_a_key_written_twice() -> None:
+    text = spoilt("  - op: 20\n", "  - op: 20\n    op: 20\n")
+    assert ["27:5 setups.20.op | the key 'op' stands twice, in line 26 and in line 27. Keep one of them"] == says(text)
