@@ -217,6 +217,9 @@ def _problem(error: ErrorDetails, tree: Tree) -> Problem:
 
 
 def _offer(given: object, choices: Sequence[str]) -> str:
+    family = [c for c in choices if isinstance(given, str) and given.lower() in c.split("-")] if given else []
+    if len(family) > 2:  # `mandrel`: one of them would be a guess
+        return f"Write {', '.join(family[:-1])} or {family[-1]}"
     near = nearest(given, choices) if isinstance(given, str) else None
     if near is not None:
         return f"Did you mean {near}?"

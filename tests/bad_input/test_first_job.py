@@ -4,6 +4,8 @@ from __future__ import annotations
 
 import textwrap
 
+import pytest
+
 from setupcheck.flow import review
 from setupcheck.jobfile.examples import SKELETON
 from setupcheck.jobfile.reading import read_job_text
@@ -137,3 +139,39 @@ def test_a_forgotten_dash_is_told_in_one_line_and_what_follows_is_read_as_its_ow
 def test_a_number_written_twice_in_one_entry_is_a_key_written_twice() -> None:
     text = spoilt("  - op: 20\n", "  - op: 20\n    op: 20\n")
     assert ["27:5 setups.20.op | the key 'op' stands twice, in line 26 and in line 27. Keep one of them"] == says(text)
+
+
+@pytest.mark.parametrize(
+    ("carried", "expected"),
+    [
+        (
+            "{torque: 40, axial_force: 2.5}",
+            [
+                "48:28 setups.30.join.must_carry.torque | 40 has no unit, so it is not a torque. Write 40 N m",
+                "48:45 setups.30.join.must_carry.axial_force | 2.5 has no unit, so it is not a force. Write 2.5 N",
+            ],
+        ),
+        (
+            "{torque: 40 mm}",
+            ["48:28 setups.30.join.must_carry.torque | '40 mm' is a length, not a torque. Write 40 N m"],
+        ),
+        (
+            "{axial_force: -800 N}",
+            [
+                "48:33 setups.30.join.must_carry.axial_force | '-800 N' is below zero. "
+                "Write 0 or more, without a minus sign"
+            ],
+        ),
+        ("{torque: much}", ["48:28 setups.30.join.must_carry.torque | 'much' is not a torque. Write it as in 40 N m"]),
+    ],
+)
+def test_a_load_in_the_wrong_unit_is_told_at_its_key_with_the_figure_that_was_written(
+    carried: str, expected: list[str]
+) -> None:
+    assert expected == says(spoilt("      square: bore", f"      must_carry: {carried}\n      square: bore", JOINED))
+
+
+@pytest.mark.parametrize("material", ["grey-iron", "EN-GJL-250", "0.6025"])
+def test_a_housing_is_the_name_or_the_number_of_a_material(material: str) -> None:
+    mesh = f"mesh: {{wheel: ring.teeth, housing: {material}}}\n"
+    assert material == read_job_text(spoilt("require:\n", f"{mesh}require:\n"), "job.yaml").job.mesh.housing
