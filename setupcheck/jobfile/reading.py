@@ -14,7 +14,7 @@ from pydantic import BaseModel, TypeAdapter, ValidationError, WithJsonSchema
 from pydantic_core import ErrorDetails
 
 from setupcheck.errors import JobError, Problem
-from setupcheck.jobfile import cuts, directions, gauges, given, joints, names, reach, sense, shapes
+from setupcheck.jobfile import cuts, directions, gauges, gearing, given, joints, names, reach, sense, shapes
 from setupcheck.jobfile.drawing import drawing_of
 from setupcheck.jobfile.examples import ENTRIES, SHAPES, TO_BEGIN
 from setupcheck.jobfile.models import Require, Surface
@@ -146,7 +146,15 @@ def _contradictions(data: Mapping[str, Data], job: Job | None) -> Iterator[names
         asked = _readable(TypeAdapter(Require), enumerate(require) if isinstance(require, list) else (), units)
     yield from sense.contradictions(surfaces, asked, names.uses(data), units=units)
     drawing = drawing_of(data, surfaces, units)
-    for check in (reach.beyond, directions.nowhere, joints.misfits, cuts.misstated, given.repeated, gauges.misplaced):
+    for check in (
+        reach.beyond,
+        directions.nowhere,
+        joints.misfits,
+        cuts.misstated,
+        given.repeated,
+        gauges.misplaced,
+        gearing.unlikely,
+    ):
         yield from check(drawing)
 
 
