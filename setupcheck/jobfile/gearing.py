@@ -19,8 +19,9 @@ from setupcheck.jobfile.nodes import map_of
 THINNEST, THICKEST = 0.2, 0.8  # share of the axial pitch that a thread takes, half as drawn; our screening choice
 ROOTS_BELOW = 3.0  # modules below the pitch circle, where no tooth reaches any more (2.2 to 2.5 is usual); our choice
 SMALLEST_THROAT = 0.8  # of the pitch circle, for wheels of few teeth; our screening choice
-LARGEST_CUTTER = 4.0  # tip radii of the worm, of which the cutter stands in for one; our screening choice
-DOUBLE = 2.0  # tip radii of the worm: what a cutter of the worm's size has where its diameter is written; by definition
+LARGEST_CUTTER = (
+    8.0  # tip radii of the worm; far above every fly cutter, below a slip of mm and inch; our screening choice
+)
 SAME = 1e-3  # relative; two figures for one module that differ by more were not rounded apart; our screening choice
 
 
@@ -44,7 +45,7 @@ def unlikely(drawing: Drawing) -> Iterator[Miss]:
             if (ref.part, ref.surface) == (wheel.part, wheel.surface) and isinstance(cutter := cut.get("cutter"), str):
                 used[cutter] = None
     for name in used:
-        yield from _cutter(drawing, name, teeth.on_circle / 2.0, drawing.length(worm.get("tip_diameter")))
+        yield from _cutter(drawing, name, drawing.length(worm.get("tip_diameter")))
 
 
 def _worm(drawing: Drawing, worm: Mapping[str, object]) -> Iterator[Miss]:
@@ -84,17 +85,15 @@ def _throats(drawing: Drawing, part: str, surfaces: Mapping[str, Surface]) -> It
             yield Miss(("parts", part, "surfaces", name, "diameter"), f"{says} {hint}")
 
 
-def _cutter(drawing: Drawing, name: str, wheel: float, worm_tip: float | None) -> Iterator[Miss]:
-    """A cutter of a worm wheel far larger than the worm it stands in for. wheel: pitch radius [mm]."""
+def _cutter(drawing: Drawing, name: str, worm_tip: float | None) -> Iterator[Miss]:
+    """A cutter of a worm wheel that dwarfs the worm it stands in for.
+
+    One of twice or thrice the worm's size is no mistake for certain: a large radius is a way to crown the teeth.
+    """
     radius = drawing.length(map_of(map_of(drawing.data.get("cutters")).get(name)).get("tip_radius"))
-    if radius is None:
+    if radius is None or worm_tip is None or worm_tip <= 0.0 or radius <= LARGEST_CUTTER * worm_tip / 2.0:
         return
-    worm = worm_tip / 2.0 if worm_tip is not None and worm_tip > 0.0 else None
-    if worm is not None and radius > LARGEST_CUTTER * worm:
-        against = f"more than {LARGEST_CUTTER:.0f} times the worm's tip radius, {drawing.shown(worm)}"
-    elif radius >= wheel and (worm is None or radius >= DOUBLE * worm):
-        against = f"not below the pitch radius of its wheel, {drawing.shown(wheel)}"
-    else:
-        return
-    says = f"a tip_radius of {drawing.shown(radius)} is {against}"
-    yield Miss(("cutters", name, "tip_radius"), f"{says}. Is it the diameter? Write the radius")
+    says = f"a tip_radius of {drawing.shown(radius)} is more than {LARGEST_CUTTER:.0f} times the worm's"
+    yield Miss(
+        ("cutters", name, "tip_radius"), f"{says}, {drawing.shown(worm_tip / 2.0)}. Check the number and its unit"
+    )

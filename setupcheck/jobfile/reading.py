@@ -215,6 +215,8 @@ def _problem(error: ErrorDetails, tree: Tree) -> Problem:
             )
             says = "nothing is written here" if given is None else f"{quoted(given)} is not known here"
             return _at(place, path, f"{says}. {offer}")
+        case "tuple_type" | "dict_type" if given is None and loc and loc[-1] in SHAPES:
+            return _at(place, path, f"nothing is written here. Write {SHAPES[str(loc[-1])]}")
         case "too_short" if loc and loc[-1] in ENTRIES:
             entry, example = ENTRIES[str(loc[-1])]
             return _at(place, path, f"no {entry} is written here. Write at least one, as in {example}")

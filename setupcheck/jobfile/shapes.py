@@ -12,6 +12,8 @@ from typing import get_origin
 from pydantic import BaseModel
 
 from setupcheck.errors import Problem
+from setupcheck.jobfile.examples import SHAPES
+from setupcheck.jobfile.nodes import map_of
 from setupcheck.jobfile.setups import Job
 from setupcheck.notation import quoted
 from setupcheck.record import record
@@ -54,8 +56,19 @@ def meant(tree: Tree) -> tuple[Tree, list[Problem]]:
             swapped.append(key)
     for path in _maps_of(data):
         problems += _swap(data, root, path)
+    if ("setups" not in data or data["setups"] == []) and not _some_given(data):
+        first = tree.place(())
+        place = inside["setups"].key_place if "setups" in inside else first
+        missing = "'setups' is missing here" if "setups" not in inside else "no setup is written here"
+        write = f"Write {SHAPES['setups']}"
+        problems.append(Problem("setups", place.line, place.column, place.length, missing, write))
     kept = tuple(p for p in tree.problems if p.path not in swapped)  # the numbers that stood as keys
     return replace(tree, data=data, root=root, problems=kept), problems
+
+
+def _some_given(data: dict[str, Data]) -> bool:
+    """A stack of bought parts needs no setup."""
+    return any(map_of(part).get("given") for part in map_of(data.get("parts")).values())
 
 
 def _problem(node: Node, path: str, problem: str, hint: str) -> Problem:

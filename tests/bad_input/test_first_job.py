@@ -36,9 +36,21 @@ def test_all_keys_of_the_file_and_of_a_joining_are_listed() -> None:
 
 
 def test_a_file_without_parts_is_told_their_shape() -> None:
-    assert ["1:1 parts | 'parts' is missing here. Write parts: {wheel: {material: C45, surfaces: {…}}}"] == says(
-        RING[: RING.index("parts:")]
-    )
+    text = RING[: RING.index("parts:")] + RING[RING.index("machines:") :]
+    missing = "1:1 parts | 'parts' is missing here. Write parts: {wheel: {material: C45, surfaces: {…}}}"
+    assert missing == says(text)[0]
+
+
+SETUPS = "setups: and under it `- op: 10`, with machine, looks_at_tool, hold and cut under op"
+
+
+def test_a_file_without_setups_is_told_their_shape_and_a_stack_of_bought_parts_needs_none() -> None:
+    begin, end = SKELETON[: SKELETON.index("setups:")], SKELETON[SKELETON.index("require:") :]
+    assert [f"1:1 setups | 'setups' is missing here. Write {SETUPS}"] == says(begin + end)
+    assert [f"14:1 setups | nothing is written here. Write {SETUPS}"] == says(f"{begin}setups:\n{end}")
+    assert [f"14:1 setups | no setup is written here. Write {SETUPS}"] == says(f"{begin}setups: []\n{end}")
+    given = "    given: [{of: bore, about: rim, runout: 3 um}]\n"
+    assert read_job_text(begin.replace("machines:\n", f"{given}machines:\n") + end, "job.yaml")
 
 
 def test_an_end_of_the_part_that_is_missing_or_wrong_is_written_with_its_sign() -> None:
@@ -53,12 +65,13 @@ def test_an_end_of_the_part_that_is_missing_or_wrong_is_written_with_its_sign() 
 
 
 def test_a_part_without_surfaces_is_told_what_one_looks_like() -> None:
-    text = RING[: RING.index("  ring:")] + "  ring: {surfaces: {}}\n"
+    text = RING[: RING.index("  ring:")] + "  ring: {surfaces: {}, given: [{of: a, about: b, runout: 3 um}]}\n"
     assert [
         "6:20 parts.ring.surfaces | no surface is written here. "
         "Write at least one, as in bore: {kind: bore, diameter: 32 H6, from: 0, to: 26}"
-    ] == says(text)
-    assert "no part is written here" == refused("setupcheck: 1\ntitle: x\nunits: mm\nparts: {}\n").problems[0].problem
+    ] == says(text)[:1]
+    told_of_parts = refused("setupcheck: 1\ntitle: x\nunits: mm\nparts: {}\n").problems[-1]
+    assert "no part is written here" == told_of_parts.problem
 
 
 SETUPS_AS_A_MAP = (
