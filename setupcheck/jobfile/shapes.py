@@ -56,7 +56,7 @@ def meant(tree: Tree) -> tuple[Tree, list[Problem]]:
             swapped.append(key)
     for path in _maps_of(data):
         problems += _swap(data, root, path)
-    if ("setups" not in data or data["setups"] == []) and not _some_given(data):
+    if ("setups" not in data or (data["setups"] == [] and not swapped)) and not _some_given(data):
         first = tree.place(())
         place = inside["setups"].key_place if "setups" in inside else first
         missing = "'setups' is missing here" if "setups" not in inside else "no setup is written here"
@@ -91,20 +91,22 @@ def _as_list(value: _Value, key: str) -> _Value:
     assert isinstance(value.data, dict) and isinstance(value.node.inside, dict)
     entries: list[Data] = []
     nodes: list[Node] = []
-    if any(not isinstance(entry, dict) for entry in value.data.values()):  # its keys are those of an entry
+    if any(
+        not (isinstance(e, dict) or (e is None and name.isdecimal())) for name, e in value.data.items()
+    ):  # its keys are those of an entry
         entries, nodes = [value.data], [value.node]
     else:
         for name, entry in value.data.items():
             node = value.node.inside[name]
-            assert isinstance(entry, dict) and isinstance(node.inside, dict)
+            own, inner = (entry, node.inside) if isinstance(entry, dict) and isinstance(node.inside, dict) else ({}, {})
             called = names.get(key)
-            if called is None or called in entry or (key == "setups" and not name.isdecimal()):
+            if called is None or called in own or (key == "setups" and not name.isdecimal()):
                 added: dict[str, Data] = {}
             else:
                 added = {called: int(name) if key == "setups" and len(name) < 9 else name}
             places = {k: Node(node.key_place, node.key_place) for k in added}
-            entries.append({**added, **entry})
-            nodes.append(Node(node.place, node.key_place, {**places, **node.inside}))
+            entries.append({**added, **own})
+            nodes.append(Node(node.place, node.key_place, {**places, **inner}))
     return _Value(entries, Node(value.node.place, value.node.key_place, nodes))
 
 

@@ -188,3 +188,19 @@ def test_a_load_in_the_wrong_unit_is_told_at_its_key_with_the_figure_that_was_wr
 def test_a_housing_is_the_name_or_the_number_of_a_material(material: str) -> None:
     mesh = f"mesh: {{wheel: ring.teeth, housing: {material}}}\n"
     assert material == read_job_text(spoilt("require:\n", f"{mesh}require:\n"), "job.yaml").job.mesh.housing
+
+
+@pytest.mark.parametrize(
+    ("setups", "expected"),
+    [
+        ("{}", []),
+        (
+            "{10: }",
+            ["setups.10 | this setup cuts nothing and joins nothing. Write cut: {surface: {}} or join: {…}"],
+        ),
+    ],
+)
+def test_setups_as_a_map_that_holds_nothing(setups: str, expected: list[str]) -> None:
+    first, *others = says(f"{SKELETON[: SKELETON.index('setups:')]}setups: {setups}\n")
+    assert "14:1 setups | setups is a list. Write each entry under it with a dash: `- op: 10`" == first
+    assert expected == [line.partition(" ")[2] for line in others]
