@@ -25,7 +25,7 @@ class Problem:
     path           dotted place in the job, `setups.30.hold.centre.clearance`; "" when there is none
     line, column   counted from 1; line 0: the problem has no place in the text (a missing file)
     length         characters to underline on that line, at least one is
-    problem, hint  what is wrong; what to write. No full stop at the end of the problem
+    problem, hint  what is wrong; what to write. No full stop at the end of the problem; an example may have lines
     """
 
     path: str
@@ -107,7 +107,8 @@ def _printable_character(character: str) -> str:
 
 def _sentence(problem: str, hint: str) -> str:
     text = problem.rstrip(" .") + "."
-    return printable(f"{text} {hint}" if hint else text)
+    first, *more = (f"{text} {hint}" if hint else text).split("\n")
+    return "\n".join([printable(first), *(f"    {printable(line)}" for line in more)])  # an example of several lines
 
 
 def _shown(problem: Problem, file: str, lines: Sequence[str]) -> str:

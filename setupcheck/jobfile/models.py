@@ -24,6 +24,7 @@ from setupcheck.jobfile.types import (
     Bound,
     Division,
     Expansion,
+    Housing,
     Length,
     Limit,
     Limits,
@@ -34,6 +35,7 @@ from setupcheck.jobfile.types import (
     Size,
     Speed,
     Temperature,
+    Whole,
     in_file_units,
     units_of,
 )
@@ -171,11 +173,7 @@ def _end(given: object) -> int:
     return way
 
 
-Facing = Annotated[
-    Literal[1, -1],
-    BeforeValidator(_end),
-    WithJsonSchema({"enum": ["+z", "-z"]}),
-]
+Facing = Annotated[Literal[1, -1], BeforeValidator(_end), WithJsonSchema({"enum": ["+z", "-z"]})]
 
 
 class Round(Shop):
@@ -227,7 +225,7 @@ class Toothing(Shop):
     """A ring of teeth or gaps: `on_circle` is the pitch circle, `at` the mid-plane."""
 
     kind: Literal["teeth"]
-    count: int = Field(ge=1, le=1000)
+    count: Whole = Field(ge=1, le=1000)
     on_circle: Size
     at: Length
     width: Size | None = None
@@ -240,7 +238,7 @@ class Pattern(Shop):
     """Holes on a circle, or a single slot or keyway: `on_circle` 2 x its distance from the axis, first place at `angle`."""
 
     kind: Literal["holes", "slot"]
-    count: int = Field(default=1, ge=1, le=1000)
+    count: Whole = Field(default=1, ge=1, le=1000)
     on_circle: Size
     at: Length
     diameter: Size | None = None
@@ -312,7 +310,7 @@ class Part(Shop):
 
 
 class Worm(Shop):
-    starts: int | None = Field(default=None, ge=1, le=12)
+    starts: Whole | None = Field(default=None, ge=1, le=12)
     hand: Literal["right", "left"] | None = None
     axial_module: Size | None = None
     reference_diameter: Size | None = None
@@ -333,7 +331,7 @@ class Mesh(Shop):
     centre_distance: Dim | None = None
     shift: float = Field(default=0.0, ge=-1.0, le=1.0)
     shaft_angle_error: AngleBound | None = None
-    housing: str | None = None
+    housing: Housing | None = None
     serves_at: Service | None = None
 
 
@@ -355,12 +353,12 @@ class Machine(Shop):
     """A machine. `axis_runout`, `axis_wobble`: full indicator movement of its own axis, as errors of each cut."""
 
     kind: Literal["lathe", "dividing-head", "rotary-table", "mill", "grinder", "drill-press", "jig-borer", "press"]
-    worm_ratio: int | None = Field(default=None, ge=1, le=1000)
+    worm_ratio: Whole | None = Field(default=None, ge=1, le=1000)
     nose_points: Literal["left", "right", "up", "front", "back"] | None = None
     cutter_stands: Literal["front", "back", "above", "left", "right"] | None = None
     axis_runout: RunOut | None = None
     axis: Literal["horizontal", "vertical"] | None = None
-    hole_circles: tuple[int, ...] = ()
+    hole_circles: tuple[Annotated[Whole, Field(ge=1, le=400)], ...] = ()
 
 
 class Distance(Shop):
@@ -413,7 +411,7 @@ class Require(Shop):
     at_most: Limit | None = None
     at_least: Limit | None = None
     between: Limits | None = None
-    grade: int | None = Field(default=None, ge=0, le=12)
+    grade: Whole | None = Field(default=None, ge=0, le=12)
     along: str | None = None
     across: Size | None = None
     at: Length | None = None
@@ -444,6 +442,6 @@ class Checked(Shop):
     """A stop-and-check caution that somebody has answered."""
 
     caution: str
-    op: int
+    op: Whole
     by: str = Field(min_length=1)
     note: str | None = None

@@ -10,12 +10,13 @@ from pathlib import Path
 from types import UnionType
 from typing import Annotated, Literal, TypeVar, Union, get_args, get_origin
 
-from pydantic import BaseModel, TypeAdapter, ValidationError
+from pydantic import BaseModel, TypeAdapter, ValidationError, WithJsonSchema
 from pydantic_core import ErrorDetails
 
 from setupcheck.errors import JobError, Problem
-from setupcheck.jobfile import cuts, directions, gauges, given, joints, names, reach, sense
+from setupcheck.jobfile import cuts, directions, gauges, gearing, given, joints, names, reach, sense, shapes
 from setupcheck.jobfile.drawing import drawing_of
+from setupcheck.jobfile.examples import ENTRIES, SHAPES, TO_BEGIN
 from setupcheck.jobfile.models import Require, Surface
 from setupcheck.jobfile.setups import Job
 from setupcheck.notation import Units, nearest, plain, quoted
@@ -99,17 +100,18 @@ def read_job(path: str | Path) -> LoadedJob:
 
     Raises: JobError with every problem of the file.
     """
-    return read_job_text(read_text(path), str(path))
+    return read_job_text(read_text(path, if_empty=TO_BEGIN), str(path))
 
 
 def read_job_text(text: str, file: str) -> LoadedJob:
     """Read and check the text of a job file; `file` is the name shown in messages."""
-    tree = parse(text, file, collect=True)
+    tree = parse(text, file, collect=True, if_empty=TO_BEGIN)
     if not isinstance(tree.data, dict):
         raise JobError(
             file, tree.lines, (Problem("", 1, 1, 1, "a job file is a map of keys", "Start with setupcheck: 1"),)
         )
-    problems: list[Problem] = []
+    tree, problems = shapes.meant(tree)
+    assert isinstance(tree.data, dict)
     job: Job | None = None
     try:
         job = Job.model_validate(tree.data, context={"units": tree.data.get("units")})
@@ -144,7 +146,15 @@ def _contradictions(data: Mapping[str, Data], job: Job | None) -> Iterator[names
         asked = _readable(TypeAdapter(Require), enumerate(require) if isinstance(require, list) else (), units)
     yield from sense.contradictions(surfaces, asked, names.uses(data), units=units)
     drawing = drawing_of(data, surfaces, units)
-    for check in (reach.beyond, directions.nowhere, joints.misfits, cuts.misstated, given.repeated, gauges.misplaced):
+    for check in (
+        reach.beyond,
+        directions.nowhere,
+        joints.misfits,
+        cuts.misstated,
+        given.repeated,
+        gauges.misplaced,
+        gearing.unlikely,
+    ):
         yield from check(drawing)
 
 
@@ -184,11 +194,12 @@ def _problem(error: ErrorDetails, tree: Tree) -> Problem:
         case "extra_forbidden":
             allowed = _fields_at(loc[:-1])
             near = nearest(str(loc[-1]), allowed)
-            offer = f"Did you mean {near}?" if near else f"Known here: {', '.join(allowed[:14])}"
+            offer = f"Did you mean {near}?" if near else f"Known here: {', '.join(allowed)}"
             return _at(tree.key_place(loc), path, f"{quoted(loc[-1])} is not a key of this entry. {offer}")
         case "missing":
             holder = tree.key_place(loc[:-1]) if len(loc) > 1 else tree.place(())
-            return _at(holder, path, f"'{loc[-1]}' is missing here. Write {loc[-1]}: {_choices_at(loc)}")
+            shape = SHAPES.get(str(loc[-1]), f"{loc[-1]}: {_choices_at(loc)}")
+            return _at(holder, path, f"'{loc[-1]}' is missing here. Write {shape}")
         case "union_tag_not_found":
             kinds = ", ".join(_tags_at(loc))
             return _at(place, f"{path}.kind", f"'kind' is missing here. Write kind: and one of {kinds}")
@@ -204,6 +215,11 @@ def _problem(error: ErrorDetails, tree: Tree) -> Problem:
             )
             says = "nothing is written here" if given is None else f"{quoted(given)} is not known here"
             return _at(place, path, f"{says}. {offer}")
+        case "tuple_type" | "dict_type" if given is None and loc and loc[-1] in SHAPES:
+            return _at(place, path, f"nothing is written here. Write {SHAPES[str(loc[-1])]}")
+        case "too_short" if loc and loc[-1] in ENTRIES:
+            entry, example = ENTRIES[str(loc[-1])]
+            return _at(place, path, f"no {entry} is written here. Write at least one, as in {example}")
         case "value_error":
             return _at(place, path, str(ctx["error"]))
         case _:
@@ -211,6 +227,9 @@ def _problem(error: ErrorDetails, tree: Tree) -> Problem:
 
 
 def _offer(given: object, choices: Sequence[str]) -> str:
+    family = [c for c in choices if isinstance(given, str) and given.lower() in c.split("-")] if given else []
+    if len(family) > 2:  # `mandrel`: one of them would be a guess
+        return f"Write {', '.join(family[:-1])} or {family[-1]}"
     near = nearest(given, choices) if isinstance(given, str) else None
     if near is not None:
         return f"Did you mean {near}?"
@@ -317,6 +336,12 @@ def _fields_at(loc: Loc) -> list[str]:
 
 def _choices_at(loc: Loc) -> str:
     """What a missing key may hold, where that is a short list; else a gap to fill."""
-    kinds = [f.annotation for m in _models_at(loc[:-1]) for n, f in m.model_fields.items() if loc[-1] in (f.alias, n)]
-    choices = get_args(kinds[0]) if kinds and get_origin(kinds[0]) is Literal else ()
+    fields = [f for m in _models_at(loc[:-1]) for n, f in m.model_fields.items() if loc[-1] in (f.alias, n)][:1]
+    choices: Sequence[object] = ()
+    for field in fields:
+        written = [s.json_schema.get("enum") for s in field.metadata if isinstance(s, WithJsonSchema) and s.json_schema]
+        if written and written[0]:  # the file's words for it, where the model holds something else
+            choices = written[0]
+        elif get_origin(field.annotation) is Literal:
+            choices = get_args(field.annotation)
     return " or ".join(str(c) for c in choices) if 0 < len(choices) <= 4 else "…"

@@ -2,13 +2,15 @@
 
 from __future__ import annotations
 
+import re
 from collections.abc import Callable
 from typing import Annotated, Literal
 
-from pydantic import BeforeValidator, ValidationInfo, WithJsonSchema
+from pydantic import BeforeValidator, ValidationError, ValidationInfo, WithJsonSchema
+from pydantic_core import InitErrorDetails, PydanticCustomError
 
 from setupcheck import notation
-from setupcheck.notation import Amount
+from setupcheck.notation import Amount, NotationError
 
 Given = str | int | float
 TEXT_OR_NUMBER = WithJsonSchema({"type": ["string", "number"]})
@@ -80,7 +82,13 @@ def _signed_error(given: object, info: ValidationInfo) -> float:
 def _range(given: object, info: ValidationInfo) -> tuple[float, float]:
     if not isinstance(given, list | str):
         raise ValueError(f"{_shown(given)} is not a range. Write the smallest and the largest: [2 um, 14 um]")
-    return notation.length_range(given, units=units_of(info), unit_needed=True)
+    low, high = notation.length_range(given, units=units_of(info), unit_needed=True)
+    if low < 0.0:
+        raise ValueError(
+            f"{_shown(given)} begins below zero, and a negative clearance is an interference. "
+            "Write 0 um or more, or join the parts by press or shrink"
+        )
+    return low, high
 
 
 def _amount(given: object, info: ValidationInfo) -> Amount:
@@ -107,6 +115,72 @@ def _service(given: object, info: ValidationInfo) -> tuple[float, float]:
     return low, high
 
 
+def _whole(given: object) -> object:
+    if isinstance(given, bool):  # pydantic would take true for 1
+        raise PydanticCustomError("int_type", "a whole number")
+    return given
+
+
+def _angle_bound(given: object) -> float:
+    try:
+        return notation.angle_bound(_scalar(given))
+    except NotationError as why:
+        if why.hint.startswith("Write it as in"):  # errors of angles are small: an example in degrees would mislead
+            raise NotationError(why.problem, 'Write it as in ±5"') from None
+        if why.hint.startswith("Write the unit: "):
+            number = str(given).strip().lstrip("+\u00b1 ")
+            raise NotationError(why.problem, f"Write {number}\" for seconds of arc, {number}' for minutes") from None
+        raise
+
+
+def _tilt(given: object) -> float:
+    tilt = notation.angle(_scalar(given))
+    if tilt < 0.0:
+        size = str(given).strip().lstrip("-\u2212\u2013 ")
+        raise ValueError(f"a tilt has no sign. Write {size}, and under leans where the nose goes")
+    return tilt
+
+
+_CARRIED = {"torque": (notation.torque, "N m"), "axial_force": (notation.force, "N")}
+_LEADING = re.compile(r"[0-9]+(?:\.[0-9]+)?")
+
+
+def _carried(given: object) -> object:
+    """Each load of a joint in its own kind of unit, every wrong one told at its key, with the figure that was written."""
+    wrong: list[InitErrorDetails] = []
+    for key, (read, unit) in _CARRIED.items():
+        load = given.get(key) if isinstance(given, dict) else None
+        if isinstance(load, bool) or not isinstance(load, str | int | float):
+            continue  # missing, or refused as no amount at all
+        try:
+            read(load)
+        except NotationError as why:
+            figure = _LEADING.match(str(load).strip())
+            hint = f"Write {figure[0]} {unit}" if figure else why.hint
+            told = PydanticCustomError("value_error", "{error}", {"error": f"{why.problem}. {hint}"})
+            wrong.append(InitErrorDetails(type=told, loc=(key,), input=load))
+    if wrong:
+        raise ValidationError.from_exception_data("must_carry", wrong)
+    return given
+
+
+_MATERIAL_NUMBER = re.compile(r"[0-9]\.[0-9]{4}")
+"""`0.6025`, `1.0503`: materials by number (EN 10027-2 and the older German numbers), which read as lengths too."""
+
+
+def _housing(given: object, info: ValidationInfo) -> object:
+    advice = "Write the housing's material, as in EN-GJL-250"
+    if isinstance(given, dict | list | bool):
+        raise ValueError(f"{notation.quoted(given)} is no material. {advice}")
+    if given is None or _MATERIAL_NUMBER.fullmatch(str(given)):
+        return given
+    try:
+        notation.length(_scalar(given), units=units_of(info))
+    except NotationError:
+        return given
+    raise ValueError(f"{notation.quoted(given)} is a length, not a material. {advice}")
+
+
 Length = Annotated[float, BeforeValidator(_size), TEXT_OR_NUMBER]
 """A size or position [mm]; a bare number takes the file's units."""
 Size = Annotated[float, BeforeValidator(_positive_size), TEXT_OR_NUMBER]
@@ -123,8 +197,16 @@ Play = Annotated[
 """Smallest and largest diametral clearance [mm]."""
 Angle = Annotated[float, _plain(notation.angle), TEXT]
 """An angle [rad]; the unit must be written."""
-AngleBound = Annotated[float, _plain(notation.angle_bound), TEXT]
+AngleBound = Annotated[float, BeforeValidator(_angle_bound), TEXT]
 """A non-negative angle bound [rad]."""
+Tilt = Annotated[float, BeforeValidator(_tilt), TEXT]
+"""A tilt of a head [rad], without sign: `leans` says which way."""
+Version = Annotated[Literal[1], BeforeValidator(_whole)]
+"""Of the job file."""
+Whole = Annotated[int, BeforeValidator(_whole)]
+"""A whole number; true and false are none."""
+Housing = Annotated[str, BeforeValidator(_housing), TEXT]
+"""The name of a material."""
 Temperature = Annotated[float, _plain(notation.temperature), TEXT]
 TemperatureDifference = Annotated[float, _plain(notation.temperature_difference), TEXT]
 Pressure = Annotated[float, _plain(notation.pressure), TEXT]
@@ -140,6 +222,8 @@ Speed = Annotated[float, _plain(notation.speed), TEXT]
 """[rev/min]"""
 Fraction = Annotated[float, _plain(notation.fraction), TEXT_OR_NUMBER]
 Limit = Annotated[Amount, BeforeValidator(_amount), TEXT_OR_NUMBER]
+Carried = Annotated[dict[Literal["torque", "axial_force"], Limit], BeforeValidator(_carried)]
+"""What a joint has to carry: torque [N mm] and force along its axis [N]."""
 Limits = Annotated[
     tuple[Amount, Amount],
     BeforeValidator(_amounts),

@@ -6,6 +6,6 @@ Leaf package: standard library and PyYAML only. Every refusal is a JobError that
 from setupcheck.yamlfile.reader import parse
 from setupcheck.yamlfile.scalars import Scalar, yaml11_surprise
 from setupcheck.yamlfile.source import read_text
-from setupcheck.yamlfile.tree import Data, Path, Place, Tree
+from setupcheck.yamlfile.tree import Data, Node, Path, Place, Tree
 
-__all__ = ["Data", "Path", "Place", "Scalar", "Tree", "parse", "read_text", "yaml11_surprise"]
+__all__ = ["Data", "Node", "Path", "Place", "Scalar", "Tree", "parse", "read_text", "yaml11_surprise"]

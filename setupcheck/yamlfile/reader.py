@@ -16,17 +16,18 @@ from setupcheck.errors import JobError, Problem
 from setupcheck.yamlfile import limits
 from setupcheck.yamlfile.scalars import LookAlike, Scalar, plain_scalar
 from setupcheck.yamlfile.syntax import CommaRun, odd_characters, syntax_problem, without_odd_characters
-from setupcheck.yamlfile.tree import Data, Node, Path, Place, Tree
+from setupcheck.yamlfile.tree import BEGINS_AN_ENTRY, Data, Node, Path, Place, Tree
 
 LOADER = getattr(yaml, "CBaseLoader", yaml.BaseLoader)  # libyaml where it is installed: ten times faster
 
 
-def parse(text: str, file: str, *, collect: bool = False) -> Tree:
+def parse(text: str, file: str, *, collect: bool = False, if_empty: str = "Write key: value on its lines") -> Tree:
     """The data of a YAML text, with places, under the scalar policy of `scalars`.
 
     file     name for messages
     collect  put wrong values (number look-alikes, keys written twice) into `Tree.problems` and go on, so that a reader
              of the data can show its own beside them (`Tree.together`); without it they are raised at once
+    if_empty what to write into a text that holds nothing
     Raises JobError with every problem that was found before the text stopped making sense.
 
     >>> tree = parse("hold:\\n  runout: 10 um\\n", "job.yaml")
@@ -39,7 +40,7 @@ def parse(text: str, file: str, *, collect: bool = False) -> Tree:
     walk = _Walk(without_odd_characters(text), lines)
     walk.read(known={problem.line for problem in odd})
     if not odd and not walk.broken and walk.data is None:
-        odd.append(Problem("", 0, 0, 0, "the file holds no values", "Write key: value on its lines"))
+        odd.append(Problem("", 0, 0, 0, "the file holds no values", if_empty))
     tree = Tree(walk.data, file, lines, (), walk.root)
     broken = odd + [replace(problem, path=tree.dotted(path, missing=True)) for problem, path in walk.broken]
     wrong = [replace(problem, path=tree.dotted(path, missing=True)) for problem, path in walk.wrong]
@@ -193,7 +194,8 @@ class _Walk:
         elif not word.strip():
             self._broken(event, 1, "a key is missing before the colon", "Write key: value")
         elif plain and not isinstance(plain_scalar(word), str):
-            self._broken(
+            self._note(
+                self.wrong,
                 event,
                 len(word),
                 f"'{_short(word)}' is no name for a key",
@@ -213,6 +215,11 @@ class _Walk:
                 f"the colon in '{_short(word)}' has no space behind it",
                 f"Write {_short(word.replace(':', ': ', 1))}",
             )
+        if word in BEGINS_AN_ENTRY and self._dash_is_missing(holder, word):
+            written = self.lines[place.line - 1][place.column - 1 :].split(" #")[0].strip()
+            self._next_entry(holder, place)
+            problem = f"a '- ' is missing before {_short(written)}"
+            self._note(self.wrong, event, place.length, problem, f"Write - {_short(written)}", key=word)
         holder.twice = behind_comma or word in holder.data  # either way its value is not taken
         if holder.twice and not behind_comma:
             first = holder.node.inside[word].key_place.line
@@ -226,6 +233,19 @@ class _Walk:
                 key=word,
             )
         holder.key, holder.key_place = word, place
+
+    def _dash_is_missing(self, holder: _Open, word: str) -> bool:
+        """The key that names an entry of a list comes again, behind others: the next entry has lost its dash."""
+        listed = len(self.stack) > 1 and isinstance(self.stack[-2].data, list)
+        return listed and not holder.flow and word in holder.data and len(holder.data) > 1
+
+    def _next_entry(self, holder: _Open, place: Place) -> None:
+        """Goes on as if the dash stood there, so that what follows is read as its own entry."""
+        around = self.stack[-2]
+        holder.data, holder.node = {}, Node(place, place, {})
+        assert isinstance(around.data, list) and isinstance(around.node.inside, list)
+        around.data.append(holder.data)
+        around.node.inside.append(holder.node)
 
     def _attach(self, data: Data, node: Node) -> None:
         if not self.stack:

@@ -18,9 +18,10 @@ _BYTE_ORDER_MARKS = (  # UTF-32 before UTF-16: the longer mark begins with the s
 )
 
 
-def read_text(path: str | PathLike[str]) -> str:
+def read_text(path: str | PathLike[str], *, if_empty: str = "Write key: value on its lines") -> str:
     """The text of a file, without byte order mark, lines ended by newlines only.
 
+    if_empty  what to write into a file that holds nothing
     Raises JobError: no such file, a directory or a device, unreadable, empty, over 2 MB (seen before it is read),
     not text, not UTF-8 (with the line).
     """
@@ -38,7 +39,7 @@ def read_text(path: str | PathLike[str]) -> str:
         raise _not_utf8(file, raw, why.start) from None
     text = text.replace("\r\n", "\n").replace("\r", "\n")
     if not text.strip():
-        raise _refusal(file, "the file is empty", "Write a job into it; the commented ones in jobs/ show how")
+        raise _refusal(file, "the file is empty", if_empty)
     return text
 
 

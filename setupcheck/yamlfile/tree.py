@@ -13,6 +13,7 @@ from setupcheck.yamlfile.scalars import Scalar
 Data: TypeAlias = "Scalar | list[Data] | dict[str, Data]"
 Path = tuple[str | int, ...]
 
+BEGINS_AN_ENTRY = ("op", "what")  # the key that an entry of a list of a job file is known by, and stands once in it
 NAMED_BY = ("op",)  # an entry of a list is called by its operation number where it has one
 
 

@@ -10,11 +10,13 @@ from pathlib import Path
 
 import pytest
 
+from setupcheck.jobfile.examples import SKELETON
 from tests.bad_input.ring import RING, spoilt
 
 GENEROUS = 20  # s; a hang is meant, not a slow machine
 MOST_MEMORY = 300_000  # kB, as the demand on bad input says
 CHECKOUT = Path(__file__).resolve().parents[2]
+BEGIN = "Begin with one such as this:\n" + "".join(f"    {line}\n" for line in SKELETON.splitlines()).rstrip("\n")
 
 
 def command(*arguments: str, at: Path) -> subprocess.CompletedProcess[str]:
@@ -56,13 +58,13 @@ FILES: dict[str, tuple[Callable[[Path], object], str]] = {
     "directory": (lambda path: path.mkdir(), "job.yaml: this is a directory. Name a file in it\n"),
     "empty": (
         content(b""),
-        "job.yaml: the file is empty. Write a job into it; the commented ones in jobs/ show how\n",
+        f"job.yaml: the file is empty. {BEGIN}\n",
     ),
     "blank": (
         content(b" \n\n"),
-        "job.yaml: the file is empty. Write a job into it; the commented ones in jobs/ show how\n",
+        f"job.yaml: the file is empty. {BEGIN}\n",
     ),
-    "notes only": (content(b"# a plan\n"), "job.yaml: the file holds no values. Write key: value on its lines\n"),
+    "notes only": (content(b"# a plan\n"), f"job.yaml: the file holds no values. {BEGIN}\n"),
     "binary": (
         content(bytes(range(256)) * 40),
         "job.yaml: the file is not text. Name a job file, written as YAML\n",

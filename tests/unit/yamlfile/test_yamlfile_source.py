@@ -83,9 +83,7 @@ def test_a_denied_file_is_said_so(tmp_path, monkeypatch):
 def test_an_empty_file_is_refused(tmp_path, content):
     file = tmp_path / "job.yaml"
     file.write_bytes(content)
-    assert refusal(file).endswith(
-        "job.yaml: the file is empty. Write a job into it; the commented ones in jobs/ show how"
-    )
+    assert refusal(file).endswith("job.yaml: the file is empty. Write key: value on its lines")
 
 
 def test_a_huge_file_is_refused_before_it_is_read(tmp_path, monkeypatch):
