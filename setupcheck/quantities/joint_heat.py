@@ -14,11 +14,15 @@ from setupcheck.physics.heating import (
     seating_time,
     shoulder_gap,
 )
+from setupcheck.physics.materials import expansion_for
 from setupcheck.quantities.book import Open, OutOfRange, Quantity
 from setupcheck.quantities.joining import JointSizes
 from setupcheck.quantities.pairing import Pair
 from setupcheck.quantities.shop import Floor
+from setupcheck.quantities.stuff import material_of
 
+SOAK_PER_MM = 180.0
+"""Seconds in an oven for each mm of wall. Source: a coupling maker's instruction (excerpt opened); still air, no fan."""
 LEFT_WHEN_IT_GRIPS = 0.3
 """Share of the joining play below which a hub may bite. Source: our screening choice."""
 
@@ -87,6 +91,38 @@ def window(floor: Floor, join: Join, pair: Pair, sizes: JointSizes, at_shaft: fl
     )
 
 
+def bites_at(floor: Floor, join: Join, needed: float, sizes: JointSizes) -> float:
+    """Temperature of the hub at which the tightest pair has no play left [degC]: what is needed less what the play takes.
+
+    T = needed - play/(alpha_A D), hub expansion high, so that it is told early.  Source: physics.heating.
+    """
+    hub = material_of(floor, floor.loaded.ref(join.outer).part)
+    assert not isinstance(hub, Open)  # `needed` has asked for it
+    return needed - joining_play(sizes.nominal) / (hub.heating.high * sizes.nominal)
+
+
+def go_gauge(floor: Floor, join: Join, sizes: JointSizes, needed: float) -> float:
+    """Gauge that has to enter the hot bore before the hub is lifted [mm]: largest journal, as warm as it is, and the play.
+
+    `needed` is asked for so that only a hub that is heated has one.  Source: shop practice of trying a preset gauge.
+    """
+    shaft = material_of(floor, floor.loaded.ref(join.inner).part)
+    assert not isinstance(shaft, Open)  # `needed` has asked for it
+    at = join.heat.shaft if join.heat is not None and join.heat.shaft is not None else floor.loaded.job.room
+    grown = expansion_for("joining", "shaft", shaft, temperature=at).value * sizes.nominal * (at - 20.0)
+    return sizes.journal_high + grown + joining_play(sizes.nominal)
+
+
+def soak(join: Join, pair: Pair) -> float | None:
+    """Time in the oven until the hub is hot through [s]: three minutes for each mm of its thickest wall; None elsewhere.
+
+    Source: instructions for heating coupling hubs in an oven (excerpt opened).
+    """
+    if join.heat is None or join.heat.by != "oven":
+        return None
+    return SOAK_PER_MM * max((s.outside - pair.diameter) / 2.0 for s in pair.sections)
+
+
 def gap_at_shoulder(join: Join, pair: Pair, most: float) -> float | None:
     """Largest gap that may open at the shoulder as the hub cools [mm]: U L/D, one-sided; 0 where that end grips first.
 
@@ -140,6 +176,25 @@ HEAT = (
         {**_HERE, **_PAIR, "sizes": "fit.sizes", "at_shaft": "heat.at_shaft", "needed": "heat.needed"},
         "time over the shaft until the hub may bite",
     ),
+    Quantity(
+        "heat.bites_at",
+        "join",
+        "degC",
+        0,
+        bites_at,
+        {**_HERE, "needed": "heat.needed", "sizes": "fit.sizes"},
+        "temperature at which the tightest pair bites",
+    ),
+    Quantity(
+        "heat.go_gauge",
+        "join",
+        "mm",
+        3,
+        go_gauge,
+        {**_HERE, "sizes": "fit.sizes", "needed": "heat.needed"},
+        "gauge that has to enter the hot bore",
+    ),
+    Quantity("heat.soak", "join", "min", 0, soak, {"join": ":", **_PAIR}, "time in the oven until it is hot through"),
     Quantity(
         "heat.shoulder_gap",
         "join",

@@ -9,7 +9,7 @@ from setupcheck.jobfile.setups import Join
 from setupcheck.notation import show
 from setupcheck.physics import interference as fits
 from setupcheck.physics.heating import holding_temperature, loosening_temperature
-from setupcheck.physics.materials import Question, expansion_for
+from setupcheck.physics.materials import COLD, Question, expansion_for
 from setupcheck.quantities.book import Open, OutOfRange, Quantity
 from setupcheck.quantities.friction import Friction
 from setupcheck.quantities.pairing import Pair, pair, rubbing, service, smoothing
@@ -173,6 +173,24 @@ def holds_to(pair: Pair, least: float, smoothing: float, friction: float, asked:
 def loosens_at(pair: Pair, least: float, smoothing: float) -> float:
     """Temperature of the whole joint at which the loosest pair has no interference left [degC]. Source: physics.heating."""
     return _finite(loosening_temperature(least - smoothing, diameter=pair.diameter, **_expansions(pair)))
+
+
+def yields_below(pair: Pair, most: float, limit: tuple[float, str]) -> float:
+    """Temperature of the whole joint below which the tightest pair leaves its elastic range [degC].
+
+    T = 20 - (U_elastic - U_max)/(D (alpha_A - alpha_I)), expansions as for strength in mild cold.  Source: physics.heating.
+    Raises: OutOfRange where cold does not tighten it, where it is too tight at 20 degC already, or below COLD.
+    """
+    cold = REFERENCE - 1.0
+    per_kelvin = pair.at(0.0, "strength", cold)  # what a kelvin of cold adds
+    if limit[0] <= most:
+        raise OutOfRange("the tightest pair is beyond its elastic range at 20 degC already")
+    if per_kelvin <= 0.0:
+        raise OutOfRange("cold does not tighten this joint")
+    at = REFERENCE - (limit[0] - most) / per_kelvin
+    if at < COLD:
+        raise OutOfRange(f"not above {COLD:g} degC")
+    return at
 
 
 def _expansions(pair: Pair) -> dict[str, float]:
@@ -365,6 +383,15 @@ STRENGTH = (
     ),
     Quantity(
         "fit.loosens_at", "join", "degC", 0, loosens_at, {**_PAIR, **_LOOSE}, "temperature at which nothing interferes"
+    ),
+    Quantity(
+        "fit.yields_below",
+        "join",
+        "degC",
+        0,
+        yields_below,
+        {**_PAIR, "most": "fit.interference_most", "limit": "fit.limit"},
+        "temperature below which the tightest pair yields",
     ),
     Quantity(
         "fit.growth_most",
