@@ -24,6 +24,7 @@ from setupcheck.jobfile.types import (
     Bound,
     Division,
     Expansion,
+    Force,
     Housing,
     Length,
     Limit,
@@ -350,7 +351,7 @@ class Cutter(Shop):
 
 
 class Machine(Shop):
-    """A machine. `axis_runout`, `axis_wobble`: full indicator movement of its own axis, as errors of each cut."""
+    """A machine. `axis_runout`: full indicator movement of its own axis, an error of each cut; `rating`: force of a press."""
 
     kind: Literal["lathe", "dividing-head", "rotary-table", "mill", "grinder", "drill-press", "jig-borer", "press"]
     worm_ratio: Whole | None = Field(default=None, ge=1, le=1000)
@@ -359,6 +360,7 @@ class Machine(Shop):
     axis_runout: RunOut | None = None
     axis: Literal["horizontal", "vertical"] | None = None
     hole_circles: tuple[Annotated[Whole, Field(ge=1, le=400)], ...] = ()
+    rating: Force | None = None
 
 
 class Distance(Shop):

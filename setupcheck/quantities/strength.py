@@ -150,18 +150,6 @@ def load_stated(join: Join, pair: Pair, op: int) -> str | Open:
     return "stated" if join.must_carry else Open((f"setups.{op}.join.must_carry",))
 
 
-def press_force(pair: Pair, most: float, rubbing: Friction, join: Join) -> float | None:
-    """Force at the end of pressing in [N], tightest pair, highest friction; None for a shrink fit. Source: Coulomb, Lamé."""
-    if join.by != "press":
-        return None
-    return math.fsum(
-        fits.press_force(
-            fits.joint_pressure(j, interference=most), friction=rubbing.high, diameter=pair.diameter, length=s.length
-        )
-        for j, s in zip(pair.joints("strength"), pair.sections, strict=True)
-    )
-
-
 def holds_to(pair: Pair, least: float, smoothing: float, friction: float, asked: float) -> float:
     """Temperature of the whole joint up to which the loosest pair still holds what it must [degC]. Source: physics.heating."""
     unit = force_held(pair, 1.0, friction)  # for each mm of interference, as pressure is straight in it
@@ -175,22 +163,17 @@ def loosens_at(pair: Pair, least: float, smoothing: float) -> float:
     return _finite(loosening_temperature(least - smoothing, diameter=pair.diameter, **_expansions(pair)))
 
 
-def yields_below(pair: Pair, most: float, limit: tuple[float, str]) -> float:
+def yields_below(pair: Pair, most: float, limit: tuple[float, str]) -> float | None:
     """Temperature of the whole joint below which the tightest pair leaves its elastic range [degC].
 
-    T = 20 - (U_elastic - U_max)/(D (alpha_A - alpha_I)), expansions as for strength in mild cold.  Source: physics.heating.
-    Raises: OutOfRange where cold does not tighten it, where it is too tight at 20 degC already, or below COLD.
+    T = 20 - (U_elastic - U_max)/(D (alpha_A - alpha_I)), expansions as for strength in mild cold; None where it does so at
+    20 degC already, or in no cold down to COLD.  Source: physics.heating.
     """
-    cold = REFERENCE - 1.0
-    per_kelvin = pair.at(0.0, "strength", cold)  # what a kelvin of cold adds
-    if limit[0] <= most:
-        raise OutOfRange("the tightest pair is beyond its elastic range at 20 degC already")
-    if per_kelvin <= 0.0:
-        raise OutOfRange("cold does not tighten this joint")
+    per_kelvin = pair.at(0.0, "strength", REFERENCE - 1.0)  # what a kelvin of cold adds
+    if limit[0] <= most or per_kelvin <= 0.0:
+        return None
     at = REFERENCE - (limit[0] - most) / per_kelvin
-    if at < COLD:
-        raise OutOfRange(f"not above {COLD:g} degC")
-    return at
+    return at if at >= COLD else None
 
 
 def _expansions(pair: Pair) -> dict[str, float]:
@@ -362,15 +345,6 @@ STRENGTH = (
         load_stated,
         {"join": ":", **_PAIR, "op": "@op"},
         "whether the job says what the joint must carry",
-    ),
-    Quantity(
-        "fit.press_force",
-        "join",
-        "N",
-        0,
-        press_force,
-        {**_PAIR, "most": "fit.interference_most", "rubbing": "fit.rubbing", "join": ":"},
-        "force at the end of pressing in",
     ),
     Quantity(
         "fit.holds_to",

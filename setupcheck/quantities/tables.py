@@ -15,6 +15,7 @@ from setupcheck.quantities.joint_heat import HEAT
 from setupcheck.quantities.measuring import MEASURE
 from setupcheck.quantities.meshing import MESHING
 from setupcheck.quantities.placing import PLACE
+from setupcheck.quantities.pressing import PRESSING
 from setupcheck.quantities.strength import STRENGTH
 from setupcheck.quantities.tilting import TILT
 
@@ -250,6 +251,7 @@ TABLES: tuple[Quantity, ...] = (
     *HEAD,
     *JOINING,
     *STRENGTH,
+    *PRESSING,
     *HEAT,
     *CUTTING,
     *SHAPE,

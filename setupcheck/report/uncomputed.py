@@ -40,7 +40,12 @@ NOT_LOOKED_AT: Mapping[str, Mapping[str, str]] = {
         "diameter": "diameter {said}",
         "speed": "speed {said}",
     },
-    "Machine": {"nose_points": "nose points {said}", "cutter_stands": "cutter stands {said}", "axis": "axis {said}"},
+    "Machine": {
+        "nose_points": "nose points {said}",
+        "cutter_stands": "cutter stands {said}",
+        "axis": "axis {said}",
+        "rating": "rating {said}",
+    },
     "Head": {
         "tilt": "tilt {said} (compared with the worm only where its wheel is cut gap by gap)",
         "uncertainty": "uncertainty of the tilt {said}",
@@ -127,6 +132,8 @@ def _of_joints(loaded: LoadedJob) -> Iterator[str]:
         yield from (f"{path}.{key}" for key in ("joint", "friction", "smoothing", "must_carry", "serves_at"))
         if join.by == "shrink":
             yield from (f"{path}.heat", f"{path}.grips_first")
+        else:
+            yield f"machines.{setup.machine}.rating"
         for ref in (loaded.ref(join.outer), loaded.ref(join.inner)):
             yield f"parts.{ref.part}.surfaces.{ref.surface}.roughness"
             yield f"parts.{ref.part}.properties"

@@ -141,6 +141,8 @@ QUANTITIES: Mapping[str, FakeQuantity] = {
         FakeQuantity("divide.advice", "setup", "", 0),
         FakeQuantity("place.shim", "place", "", 0),
         FakeQuantity("fit.load_stated", "join", "", 0),
+        FakeQuantity("fit.press_force", "join", "N", 0),
+        FakeQuantity("fit.press_allowed", "join", "N", 0),
         FakeQuantity("mesh.least_backlash", "stack", "mm", 4),
         FakeQuantity("cutter.width", "cut", "mm", 4),
         FakeQuantity("cutter.width_needed", "cut", "mm", 4),

@@ -1,0 +1,68 @@
+"""A pressed joint against its press: force of the tightest pair at the end, and what the press may be asked for. N."""
+
+from __future__ import annotations
+
+import math
+
+from setupcheck.jobfile.setups import Join
+from setupcheck.physics import interference as fits
+from setupcheck.quantities.book import Open, Quantity
+from setupcheck.quantities.friction import Friction
+from setupcheck.quantities.pairing import Pair
+from setupcheck.quantities.shop import Floor
+
+IN_HAND = 1.5
+"""Rating of a press over the largest force asked of it. Source: our screening choice, as the caution has it."""
+
+
+def press_force(pair: Pair, most: float, rubbing: Friction, join: Join) -> float | None:
+    """Force at the end of pressing in [N], tightest pair, highest friction; None for a shrink fit. Source: Coulomb, Lamé."""
+    if join.by != "press":
+        return None
+    return math.fsum(
+        fits.press_force(
+            fits.joint_pressure(j, interference=most), friction=rubbing.high, diameter=pair.diameter, length=s.length
+        )
+        for j, s in zip(pair.joints("strength"), pair.sections, strict=True)
+    )
+
+
+def press_allowed(floor: Floor, join: Join, op: int) -> float | Open | None:
+    """Force that the press may be asked for [N]: its rating over 1.5; None for a joint that is not pressed.
+
+    Source: the marking of the press, as the job states it; the factor our screening choice.
+    """
+    if join.by != "press":
+        return None
+    setup = next(s for s in floor.loaded.job.setups if s.op == op)
+    machine = floor.loaded.job.machines.get(setup.machine or "")
+    if machine is None:
+        return Open((f"setups.{op}.machine",))
+    if machine.rating is None:
+        return Open((f"machines.{setup.machine}.rating",))
+    return machine.rating / IN_HAND
+
+
+_HERE = {"floor": "route.floor", "join": ":"}
+_PAIR = {"pair": "fit.pair"}
+
+PRESSING = (
+    Quantity(
+        "fit.press_force",
+        "join",
+        "N",
+        0,
+        press_force,
+        {**_PAIR, "most": "fit.interference_most", "rubbing": "fit.rubbing", "join": ":"},
+        "force at the end of pressing in",
+    ),
+    Quantity(
+        "fit.press_allowed",
+        "join",
+        "N",
+        0,
+        press_allowed,
+        {**_HERE, "op": "@op"},
+        "force that the press may be asked for",
+    ),
+)
