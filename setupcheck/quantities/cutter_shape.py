@@ -89,15 +89,15 @@ def shape(cut: WheelCut) -> Shape:
         over = fly.oversize(
             cutter_radius=cut.radius, worm_tip_diameter=d.tip_diameter, clearance=max(cut.clearance, 0.0)
         )
-        pair = {
-            "pitch_diameter": d.pitch_diameter,
-            "wheel_diameter": d.wheel_diameter,
-            "pressure_angle": d.pressure_angle,
-            "lead_angle": d.lead_angle,
-            "gap_arc": d.thread,
-            "oversize": over,
-        }
-        return Shape(cut, fly.crowning(**pair), fly.twist(**pair))
+        plunge = fly.Plunge(
+            pitch_diameter=d.pitch_diameter,
+            wheel_diameter=d.wheel_diameter,
+            pressure_angle=d.pressure_angle,
+            lead_angle=d.lead_angle,
+            gap_arc=d.thread,
+            oversize=over,
+        )
+        return Shape(cut, fly.crowning(plunge), fly.twist(plunge))
     except ValueError as why:
         raise OutOfRange(str(why)) from None
 

@@ -14,6 +14,7 @@ from __future__ import annotations
 
 import math
 
+from setupcheck.record import record
 from setupcheck.worm.geometry import above_zero, not_below_zero, steep_enough
 
 RIDGE_ALLOWANCE = 1.3
@@ -40,12 +41,36 @@ def _wall(*, pressure_angle: float, gap_arc: float, wheel_diameter: float) -> fl
     return math.tan(pressure_angle + gap_arc / wheel_diameter)
 
 
-def _pitch_radius(pitch_diameter: float, oversize: float) -> float:
-    """Radius of the cutter at pitch height, r1 + D. Raises: ValueError where it is not above zero."""
-    above_zero(pitch_diameter=pitch_diameter)
-    radius = pitch_diameter / 2.0 + oversize
-    above_zero(cutter_radius_at_pitch_height=radius)
-    return radius
+@record(kw_only=True)
+class Plunge:
+    """A cutter plunged into a wheel: what crowning, twist and all that follows from them are made of [mm, rad].
+
+    pitch_diameter  of the worm at the pitch point;  wheel_diameter, gap_arc  d2 and the gap there
+    pressure_angle  axial;  lead_angle  at the pitch point;  oversize  D, what the cutter is larger than tip and clearance
+    Raises: ValueError for sizes not above zero or angles outside 0 .. 45 deg.
+    """
+
+    pitch_diameter: float
+    wheel_diameter: float
+    pressure_angle: float
+    lead_angle: float
+    gap_arc: float
+    oversize: float
+
+    def __post_init__(self) -> None:
+        steep_enough(lead_angle=self.lead_angle, pressure_angle=self.pressure_angle)
+        above_zero(pitch_diameter=self.pitch_diameter, wheel_diameter=self.wheel_diameter, gap_arc=self.gap_arc)
+        above_zero(cutter_radius_at_pitch_height=self.at_pitch)
+
+    @property
+    def at_pitch(self) -> float:
+        """Radius of the cutter at pitch height, r1 + D [mm]."""
+        return self.pitch_diameter / 2.0 + self.oversize
+
+    @property
+    def wall(self) -> float:
+        """Lean of the gap's wall at the pitch point in the cutter's plane: tan(alpha + th0), th0 = s2/d2."""
+        return _wall(pressure_angle=self.pressure_angle, gap_arc=self.gap_arc, wheel_diameter=self.wheel_diameter)
 
 
 def smallest_radius(
@@ -82,67 +107,45 @@ def smallest_radius(
     return worm_tip_diameter / 2.0 + clearance + pitch_radius - r1
 
 
-def crowning(
-    *,
-    pitch_diameter: float,
-    wheel_diameter: float,
-    pressure_angle: float,
-    lead_angle: float,
-    gap_arc: float,
-    oversize: float,
-) -> float:
+def crowning(cut: Plunge) -> float:
     """Crowning A of the flank along the face [1/mm]; negative means edge contact at both ends.
 
     A = 1/2 [tan alpha/r1 - tan(alpha + th0)/((r1 + D) cos^2 g) - tan alpha tan^2 g/r2]
     A form cutter stands still while the flank is rolled, hence alpha + th0; cos^2 g is the helix's curvature.
-    Raises: ValueError for sizes not above zero or angles outside 0 .. 45 deg.
     Source: derived; 1 to 3 % below the exact gap of tests/unit/worm.
 
-    >>> round(1e3 * crowning(pitch_diameter=30.0, wheel_diameter=100.0, pressure_angle=math.radians(20.0),
-    ...       lead_angle=math.atan(1.0 / 12.0), gap_arc=math.pi * 1.25, oversize=12.0), 2)
+    >>> round(1e3 * crowning(Plunge(pitch_diameter=30.0, wheel_diameter=100.0, pressure_angle=math.radians(20.0),
+    ...       lead_angle=math.atan(1.0 / 12.0), gap_arc=math.pi * 1.25, oversize=12.0)), 2)
     4.48
     """
-    steep_enough(lead_angle=lead_angle)
-    wall = _wall(pressure_angle=pressure_angle, gap_arc=gap_arc, wheel_diameter=wheel_diameter)
-    at_pitch = _pitch_radius(pitch_diameter, oversize)
-    slope, rise = math.tan(pressure_angle), math.tan(lead_angle) ** 2
-    worm, wheel = 2.0 * slope / pitch_diameter, 2.0 * slope * rise / wheel_diameter
-    return 0.5 * (worm - wall * (1.0 + rise) / at_pitch - wheel)
+    slope, rise = math.tan(cut.pressure_angle), math.tan(cut.lead_angle) ** 2
+    worm, wheel = 2.0 * slope / cut.pitch_diameter, 2.0 * slope * rise / cut.wheel_diameter
+    return 0.5 * (worm - cut.wall * (1.0 + rise) / cut.at_pitch - wheel)
 
 
-def twist(
-    *,
-    pitch_diameter: float,
-    wheel_diameter: float,
-    pressure_angle: float,
-    lead_angle: float,
-    gap_arc: float,
-    oversize: float,
-) -> float:
+def twist(cut: Plunge) -> float:
     """Twist B that the revolved surface lacks [1/mm]: tan g [1/r1 + 1/r2 - K'(r2)], tilt = g.
 
     K = (cos psi/cos alpha_r)(1 - tan psi cos^2 g x/rc): what an arc of the flank gains per unit of sideways travel of
     the cut, psi = alpha_r + th the wall's lean, x = r sin th, rc the cutter radius there; K' its slope over r.
     For a narrow gap K' = -tan^2 alpha [1/r2 + 1/(r1 + D)]; the gap's width adds 5 to 11 % to B.
-    Raises: ValueError for sizes not above zero or angles outside 0 .. 45 deg.
     Source: derived here; the exact gap agrees within 1 % in tests/unit/worm.
 
-    >>> round(1e3 * twist(pitch_diameter=30.0, wheel_diameter=100.0, pressure_angle=math.radians(20.0),
-    ...       lead_angle=math.atan(1.0 / 12.0), gap_arc=math.pi * 1.25, oversize=12.0), 2)
+    >>> round(1e3 * twist(Plunge(pitch_diameter=30.0, wheel_diameter=100.0, pressure_angle=math.radians(20.0),
+    ...       lead_angle=math.atan(1.0 / 12.0), gap_arc=math.pi * 1.25, oversize=12.0)), 2)
     8.67
     """
-    steep_enough(lead_angle=lead_angle)
-    tan_psi = _wall(pressure_angle=pressure_angle, gap_arc=gap_arc, wheel_diameter=wheel_diameter)
-    r2, slope, th = wheel_diameter / 2.0, math.tan(pressure_angle), gap_arc / wheel_diameter
-    x, rc = r2 * math.sin(th), _pitch_radius(pitch_diameter, oversize) + r2 * (1.0 - math.cos(th))
+    tan_psi = cut.wall
+    r2, slope, th = cut.wheel_diameter / 2.0, math.tan(cut.pressure_angle), cut.gap_arc / cut.wheel_diameter
+    x, rc = r2 * math.sin(th), cut.at_pitch + r2 * (1.0 - math.cos(th))
     per_arc = math.cos(th) - math.sin(th) * slope  # cos psi/cos alpha
     per_arc_slope = -(slope * (math.sin(th) + math.cos(th) * slope) + math.sin(th) * (1.0 + slope**2) / slope) / r2
     lean_slope = (1.0 / slope + slope) / r2  # of psi over r
-    part = math.cos(lead_angle) ** 2 / rc
+    part = math.cos(cut.lead_angle) ** 2 / rc
     lost = tan_psi * x * part
     lost_slope = part * ((1.0 + tan_psi**2) * lean_slope * x + tan_psi * per_arc * (tan_psi + x / rc))
     gain_slope = per_arc_slope * (1.0 - lost) - per_arc * lost_slope
-    return math.tan(lead_angle) * (2.0 / pitch_diameter + 1.0 / r2 - gain_slope)
+    return math.tan(cut.lead_angle) * (2.0 / cut.pitch_diameter + 1.0 / r2 - gain_slope)
 
 
 def crowned(crowning: float) -> None:
@@ -227,31 +230,26 @@ def profile_error_of_tilt(error: float, *, crowning: float, twist: float) -> flo
 
 def profile_error_of_offset(
     offset: float,
+    cut: Plunge,
     *,
     crowning: float,
     twist: float,
-    pitch_diameter: float,
-    wheel_diameter: float,
-    pressure_angle: float,
-    lead_angle: float,
-    gap_arc: float,
-    oversize: float,
 ) -> float:
     """Error of the pressure angle on the contact ridge for a cutter off the wheel's mid-plane [rad].
 
     |d| [C_c B/(2 A) + tan g (1/r2 + tan^2 alpha/(r1 + D))],  C_c = tan(alpha + th0)/((r1 + D) cos^2 g)
     offset  d, cutter's plane from the mid-plane [mm]
-    Raises: ValueError for edge contact, sizes not above zero, or angles outside 0 .. 45 deg.
+    Raises: ValueError for edge contact.
     Source: derived from e; the simulated transmission error is up to twice this over two modules of height.
 
-    >>> round(1e3 * 5.0 * profile_error_of_offset(0.05, crowning=4.41e-3, twist=8.68e-3, pitch_diameter=30.0,
-    ...       wheel_diameter=100.0, pressure_angle=math.radians(20.0), lead_angle=math.atan(1.0 / 12.0),
-    ...       gap_arc=math.pi * 1.25, oversize=11.75), 1)
+    >>> round(1e3 * 5.0 * profile_error_of_offset(0.05, Plunge(pitch_diameter=30.0, wheel_diameter=100.0,
+    ...       pressure_angle=math.radians(20.0), lead_angle=math.atan(1.0 / 12.0), gap_arc=math.pi * 1.25, oversize=11.75),
+    ...       crowning=4.41e-3, twist=8.68e-3), 1)
     4.3
     """
     slope = ridge_slope(crowning=crowning, twist=twist)
-    steep_enough(lead_angle=lead_angle)
-    wall = _wall(pressure_angle=pressure_angle, gap_arc=gap_arc, wheel_diameter=wheel_diameter)
-    at_pitch, rise = _pitch_radius(pitch_diameter, oversize), math.tan(lead_angle)
-    bend = wall * (1.0 + rise * rise) / at_pitch
-    return abs(offset) * (bend * slope + rise * (2.0 / wheel_diameter + math.tan(pressure_angle) ** 2 / at_pitch))
+    rise = math.tan(cut.lead_angle)
+    bend = cut.wall * (1.0 + rise * rise) / cut.at_pitch
+    return abs(offset) * (
+        bend * slope + rise * (2.0 / cut.wheel_diameter + math.tan(cut.pressure_angle) ** 2 / cut.at_pitch)
+    )

@@ -9,6 +9,7 @@ import math
 from typing import Literal
 
 from setupcheck.record import record
+from setupcheck.worm.cutter import Plunge
 from setupcheck.worm.geometry import above_zero, not_below_zero, steep_enough
 
 Hand = Literal["right", "left"]
@@ -133,33 +134,19 @@ def wrong_way_error(lead_angle: float) -> float:
     return 2.0 * lead_angle
 
 
-def square_tilt(
-    *,
-    pitch_diameter: float,
-    wheel_diameter: float,
-    pressure_angle: float,
-    lead_angle: float,
-    gap_arc: float,
-    oversize: float,
-) -> float:
+def square_tilt(cut: Plunge) -> float:
     """Tilt at which the contact at pitch height lies in the mid-plane [rad]: C_0 = 0; a little more than g.
 
     tan tau = tan g [1 + tan(alpha + th0) (s2/2) (1/(r1 + D) + 1/r2)]
-    Raises: ValueError for sizes not above zero or angles outside 0 .. 45 deg.
     Source: derived; the exact gap agrees in tests/unit/worm.
 
-    >>> tau = square_tilt(pitch_diameter=30.0, wheel_diameter=100.0, pressure_angle=math.radians(20.0),
-    ...       lead_angle=math.atan(1.0 / 12.0), gap_arc=math.pi * 1.25, oversize=12.0)
+    >>> tau = square_tilt(Plunge(pitch_diameter=30.0, wheel_diameter=100.0, pressure_angle=math.radians(20.0),
+    ...       lead_angle=math.atan(1.0 / 12.0), gap_arc=math.pi * 1.25, oversize=12.0))
     >>> round(math.degrees(tau - math.atan(1.0 / 12.0)), 2)
     0.22
     """
-    steep_enough(lead_angle=lead_angle, pressure_angle=pressure_angle)
-    above_zero(wheel_diameter=wheel_diameter, gap_arc=gap_arc, pitch_diameter=pitch_diameter)
-    at_pitch = pitch_diameter / 2.0 + oversize
-    above_zero(cutter_radius_at_pitch_height=at_pitch)
-    wall = math.tan(pressure_angle + gap_arc / wheel_diameter)
-    bend = 1.0 / at_pitch + 2.0 / wheel_diameter
-    return math.atan(math.tan(lead_angle) * (1.0 + wall * gap_arc / 2.0 * bend))
+    bend = 1.0 / cut.at_pitch + 2.0 / cut.wheel_diameter
+    return math.atan(math.tan(cut.lead_angle) * (1.0 + cut.wall * cut.gap_arc / 2.0 * bend))
 
 
 @record

@@ -43,10 +43,10 @@ class Case:
         )
 
     def crowning(self, radius: float) -> float:
-        return cutter.crowning(oversize=self.oversize(radius), **self.pair)
+        return cutter.crowning(cutter.Plunge(oversize=self.oversize(radius), **self.pair))
 
     def twist(self, radius: float) -> float:
-        return cutter.twist(oversize=self.oversize(radius), **self.pair)
+        return cutter.twist(cutter.Plunge(oversize=self.oversize(radius), **self.pair))
 
     def oversize(self, radius: float) -> float:
         return cutter.oversize(
@@ -184,10 +184,9 @@ def test_a_cutter_off_the_mid_plane(offset: float, radius: float, simulated: flo
     # worse of the two signs, um; the closed form is up to twice too small
     error = cutter.profile_error_of_offset(
         offset,
+        cutter.Plunge(oversize=ONE_20.oversize(radius), **ONE_20.pair),
         crowning=ONE_20.crowning(radius),
         twist=ONE_20.twist(radius),
-        oversize=ONE_20.oversize(radius),
-        **ONE_20.pair,
     )
     assert 0.5 < 5e3 * error / simulated < 2.0
 
@@ -197,7 +196,7 @@ def test_a_cutter_off_the_mid_plane(offset: float, radius: float, simulated: flo
     [(ONE_20, 29.75, 0.22), (THREE_20, 17.5, 0.14), (THREE_15, 19.4, 0.09)],
 )
 def test_the_tilt_that_keeps_the_contact_in_the_mid_plane(case: Case, radius: float, more_deg: float) -> None:
-    square = tilt.square_tilt(oversize=case.oversize(radius), **case.pair)
+    square = tilt.square_tilt(cutter.Plunge(oversize=case.oversize(radius), **case.pair))
     assert more_deg == pytest.approx(math.degrees(square - case.pair["lead_angle"]), abs=0.006)
 
 

@@ -51,17 +51,17 @@ def gap(p: Pair) -> float:
 def test_crowning_and_twist_agree_with_the_exact_gap(p: Pair) -> None:
     pair = pair_of(p)
     a, b, _ = replace(p, tilt=pair["lead_angle"]).crowning_and_twist()
-    crowning = cutter.crowning(**pair)
+    crowning = cutter.crowning(cutter.Plunge(**pair))
     assert a == pytest.approx(crowning, rel=0.04)
     assert crowning < a  # on the careful side
-    assert b == pytest.approx(cutter.twist(**pair), rel=0.005)
+    assert b == pytest.approx(cutter.twist(cutter.Plunge(**pair)), rel=0.005)
 
 
 @pytest.mark.parametrize("p", PAIRS)
 def test_at_the_square_tilt_the_contact_stays_in_the_mid_plane(p: Pair) -> None:
     pair = pair_of(p)
     at_lead_angle = replace(p, tilt=pair["lead_angle"]).crowning_and_twist()[2]
-    at_square = replace(p, tilt=tilt.square_tilt(**pair)).crowning_and_twist()[2]
+    at_square = replace(p, tilt=tilt.square_tilt(cutter.Plunge(**pair))).crowning_and_twist()[2]
     assert abs(at_square) < 0.02 * abs(at_lead_angle)
 
 

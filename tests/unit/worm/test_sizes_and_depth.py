@@ -102,11 +102,10 @@ def test_errors_grow_as_the_cutter_comes_down_to_its_floor() -> None:
         "lead_angle": math.atan(1.0 / 12.0),
         "gap_arc": math.pi * 1.25,
     }
+    plunges = [cutter.Plunge(oversize=d, **pair) for d in (2.1, 3.0, 6.0, 12.0, 32.0, 100.0)]
     grown = [
-        cutter.profile_error_of_tilt(
-            1e-3, crowning=cutter.crowning(oversize=d, **pair), twist=cutter.twist(oversize=d, **pair)
-        )
-        for d in (2.1, 3.0, 6.0, 12.0, 32.0, 100.0)
+        cutter.profile_error_of_tilt(1e-3, crowning=cutter.crowning(plunge), twist=cutter.twist(plunge))
+        for plunge in plunges
     ]
     assert sorted(grown, reverse=True) == grown
     assert grown[0] > 20.0 * grown[3]
