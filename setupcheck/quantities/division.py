@@ -38,6 +38,13 @@ def circle(setup: Setup) -> int | Open | None:
     return setup.divide.circle if setup.divide.circle is not None else Open((f"setups.{setup.op}.divide.circle",))
 
 
+def circle_there(floor: Floor, setup: Setup, circle: int) -> str | None:
+    """there or not-there: whether the head has the chosen circle; None where its circles are not listed. Source: the job file."""
+    _, machine = machine_of(floor.loaded, setup)
+    own = machine.hole_circles if machine is not None else ()
+    return ("there" if circle in own else "not-there") if own else None
+
+
 def left_over(worm_ratio: int, count: int, circle: int) -> float:
     """Part of a hole left over by one step, 0 where the circle closes: distance of ratio / count x circle to a whole number.
 
@@ -207,6 +214,15 @@ DIVIDE = (
         stated,
         {"setup": ":", **COUNT},
         "whether the dividing method's errors are stated",
+    ),
+    Quantity(
+        "divide.circle_there",
+        "setup",
+        "",
+        0,
+        circle_there,
+        {"floor": "route.floor", "setup": ":", "circle": "divide.circle"},
+        "whether the head has the chosen circle",
     ),
     Quantity(
         "divide.left_out",

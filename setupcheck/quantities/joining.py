@@ -7,6 +7,7 @@ from setupcheck.jobfile.names import Ref
 from setupcheck.jobfile.setups import Heat, Join
 from setupcheck.ledger.account import Account
 from setupcheck.ledger.causes import Cause
+from setupcheck.notation import show
 from setupcheck.quantities.book import Known, Open, OutOfRange, Quantity
 from setupcheck.quantities.shop import Floor
 from setupcheck.quantities.sized import at_reference
@@ -113,6 +114,22 @@ def kind(most: float, least: float) -> str:
     if least > 0.0:
         return "interference"
     return "clearance" if most <= 0.0 else "transition"
+
+
+def fit_in_words(floor: Floor, most: float, least: float) -> str:
+    """Interference, play, or both, over the limits of the sizes: a negative interference is said as the play it is.
+
+    Source: the limits of bore and journal.
+    """
+    unit, digits = ("thou", 2) if floor.loaded.job.units == "in" else ("um", 1)
+    low, high = show(abs(least), unit, digits), show(abs(most), unit, digits)
+    match kind(most, least):
+        case "interference":
+            return f"interference {low} to {high} at 20 degC"
+        case "clearance":
+            return f"play {high} to {low} at 20 degC"
+        case _:
+            return f"from {low} of play to {high} of interference at 20 degC"
 
 
 def _expansion(floor: Floor, part: str, of: str, temperature: float) -> float | Open:
@@ -223,6 +240,15 @@ JOINING = (
     Quantity("fit.sizes", "join", "", 0, sizes, _HERE, "limits of bore and journal"),
     Quantity("fit.interference_most", "join", "um", 1, interference_most, _SIZES, "interference of the tightest pair"),
     Quantity("fit.interference_least", "join", "um", 1, interference_least, _SIZES, "interference of the loosest pair"),
+    Quantity(
+        "fit.said",
+        "join",
+        "",
+        0,
+        fit_in_words,
+        {"floor": "route.floor", **_MOST, "least": "fit.interference_least"},
+        "the fit over its limits, in words",
+    ),
     Quantity("fit.kind", "join", "", 0, kind, {**_MOST, "least": "fit.interference_least"}, "kind of the fit"),
     Quantity("heat.needed", "join", "degC", 0, needed, {**_HERE, **_MOST, **_SIZES}, "heat the hub needs to go on"),
     Quantity(

@@ -28,7 +28,7 @@ SENTENCES: Sequence[tuple[str, str, str]] = (
         "insert",
         "{cutter.width_needed} wide at pitch height and {cutter.tip_width} at its tip fit the thread without backlash",
     ),
-    ("join", "fit", "interference {fit.interference_least} to {fit.interference_most} at 20 degC"),
+    ("join", "fit", "{fit.said}"),
     ("join", "fit", "in service {fit.grip_least} to {fit.grip_most}, elastic up to {fit.elastic} ({fit.weaker})"),
     ("join", "fit", "holds {fit.torque_held} at its loosest and warmest"),
     ("join", "fit", "holds what it must up to {fit.holds_to} and is loose at {fit.loosens_at}"),

@@ -89,3 +89,11 @@ def test_a_shaft_by_its_american_number_is_warned_of_cold_as_by_its_european_one
             WHEEL, ("material: 42CrMo4", f"material: {name}"), ("by: oven,", "by: oven, cold_by: liquid-nitrogen,")
         )
         assert "cold-brittle-steel" in {c.id for c in reviewed(cold).evaluation.cautions}
+
+
+def test_a_hole_circle_that_the_head_does_not_have_fails_and_one_it_has_does_not() -> None:
+    for circles, failed in (("27, 54", {"DIVIDE-007"}), ("18, 27", set())):
+        listed = changed(
+            WHEEL, ("worm_ratio: 40, nose_points", f"worm_ratio: 40, hole_circles: [{circles}], nose_points")
+        )
+        assert failed == rules(listed, "fail")

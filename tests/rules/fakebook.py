@@ -120,6 +120,7 @@ QUANTITIES: Mapping[str, FakeQuantity] = {
         FakeQuantity("divide.error_stated", "setup", "", 0),
         FakeQuantity("divide.error_kind", "setup", "", 0),
         FakeQuantity("divide.left_out", "setup", "", 0),
+        FakeQuantity("divide.circle_there", "setup", "", 0),
         FakeQuantity("tilt.error", "setup", "arcmin", 1),
         FakeQuantity("cutter.passes_left", "cut", "um", 1),
         FakeQuantity("cutter.last_pass", "cut", "mm", 3),

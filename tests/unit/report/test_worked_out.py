@@ -63,3 +63,10 @@ def test_text_and_json_say_the_same() -> None:
     assert worked_out(found) == data["worked_out"]
     assert all(" ".join(line.split()) in text for line in data["worked_out"])
     assert "fit.holds_to@70" in data["quantities"]
+
+
+def test_a_fit_that_is_none_is_said_as_the_play_it_is() -> None:
+    play = lines(changed(WHEEL, ("diameter: 32.030 ±0.003", "diameter: 31.990 ±0.003")))
+    assert "op 70, fit: play 7.0 um to 24.0 um at 20 degC" in play  # 32 H5 less 31.987 to 31.993
+    both = lines(changed(WHEEL, ("diameter: 32.030 ±0.003", "diameter: 32.005 ±0.003")))
+    assert "op 70, fit: from 9.0 um of play to 8.0 um of interference at 20 degC" in both
