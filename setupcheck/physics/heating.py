@@ -243,8 +243,12 @@ def heat_loss(ring: Ring, *, temperature: float, air: float, film: float | None 
     return ring.surface * (h * (temperature - air) + radiated)
 
 
-def cooled_temperature(ring: Ring, *, start: float, seconds: float, air: float, film: float | None = None) -> float:
+def cooled_temperature(
+    ring: Ring, *, start: float, seconds: float, air: float, film: float | None = None, steps: int = _STEPS
+) -> float:
     """Temperature of a ring after some time in the air [degC]; start - this is the loss in the carry.
+
+    A ring colder than the air is warmed by the same law; frost on it is not counted.
 
     m c dT/dt = -q(T), Runge-Kutta of fourth order.
     Validity: one temperature in the whole ring (Biot number under 0.1, always so for metal rings in air), still air, no
@@ -257,7 +261,7 @@ def cooled_temperature(ring: Ring, *, start: float, seconds: float, air: float, 
     """
     if seconds < 0.0:
         raise ValueError("a time cannot be below 0")
-    step = seconds / _STEPS
+    step = seconds / steps
     capacity = ring.heat_capacity
     low, high = sorted((start, air))  # a foil of no mass would overshoot the air within one step
 
@@ -265,7 +269,7 @@ def cooled_temperature(ring: Ring, *, start: float, seconds: float, air: float, 
         return -heat_loss(ring, temperature=min(max(temperature, low), high), air=air, film=film) / capacity
 
     now = start
-    for _ in range(_STEPS):
+    for _ in range(steps):
         a = rate(now)
         b = rate(now + step / 2.0 * a)
         c = rate(now + step / 2.0 * b)
