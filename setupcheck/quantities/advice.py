@@ -52,6 +52,8 @@ def oven(floor: Floor, join: Join, pair: Pair, most: float, needed: float, cap: 
     for _ in range(SETTLED):
         least, wanted = for_need(needed, least), for_need(needed + SPARE, wanted)
     highest = cap - error[0]
+    if wanted <= floor.loaded.job.room:  # the cold of the shaft does it
+        return None
     low, high = math.ceil(least), math.floor(highest)
     asked = wanted if wanted <= high else for_need(needed + SPARE, float(high))
     expansion = expansion_for("joining", "hub", pair.hub, temperature=100.0).value

@@ -9,6 +9,8 @@ from setupcheck.notation import show
 from setupcheck.physics.cold_gas import carbon_dioxide, dry_ice_at_most, litres_at_most, oxygen_left
 from setupcheck.quantities.book import Open, Quantity
 from setupcheck.quantities.contents import LOW_TEMPER, breaks
+from setupcheck.quantities.joining import JointSizes
+from setupcheck.quantities.joint_heat import GAUGE_STEP
 from setupcheck.quantities.material_data import UnknownMaterial, material
 from setupcheck.quantities.shop import Floor
 from setupcheck.quantities.stuff import cap_of, material_of
@@ -182,6 +184,22 @@ def carry_advice(join: Join, op: int, allowed: float, spare: float | None, oven:
     return f"{first}. With the way as it is: {oven}" if oven is not None else f"{first}."
 
 
+def gauge_advice(
+    floor: Floor, join: Join, op: int, gauge: float, go: float, sizes: JointSizes, opens: float | None
+) -> str:
+    """Size of the gauge for the hot bore, and the largest that the smallest bore takes in. Source: quantities.joint_heat.
+
+    gauge  is asked for so that only a joint with one has it
+    """
+    unit, digits = ("in", 4) if floor.loaded.job.units == "in" else ("mm", 3)
+    made = f"Make the gauge {show(go, unit, digits)}, the largest journal and the play (setups.{op}.join.heat.gauge)"
+    step = GAUGE_STEP[floor.loaded.job.units]
+    enters = math.floor((sizes.bore_low + opens) / step + 1e-6) * step if opens is not None else 0.0
+    if enters < go:
+        return f"{made}."
+    return f"{made}; as hot as planned, the smallest bore takes up to {show(enters, unit, digits)}."
+
+
 _JOIN, _OP = {"join": ":"}, {"op": "@op"}
 _HERE = {"floor": "route.floor", **_JOIN}
 
@@ -202,6 +220,23 @@ HEAT_CHECKS = (
         },
         "how soon the hub has to be at the shaft",
         {"spare": None, "oven": None},
+    ),
+    Quantity(
+        "heat.gauge_advice",
+        "join",
+        "",
+        0,
+        gauge_advice,
+        {
+            **_HERE,
+            **_OP,
+            "gauge": "heat.gauge",
+            "go": "heat.go_gauge",
+            "sizes": "fit.sizes",
+            "opens": "settled heat.opens_by_heat",
+        },
+        "size of the gauge for the hot bore, in words",
+        {"opens": None},
     ),
     Quantity("heat.gauge", "join", "mm", 3, gauge, _JOIN, "gauge that is tried in the hot bore"),
     Quantity("heat.proved", "join", "", 0, proved, {**_HERE, **_OP}, "how the hot hub is proved"),
