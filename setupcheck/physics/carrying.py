@@ -7,7 +7,7 @@ import math
 from setupcheck.physics.heating import AIR_CONDUCTIVITY, REFERENCE_TEMPERATURE, Ring, cooled_temperature
 from setupcheck.record import record
 
-_COARSE = 60
+_COARSE = 24
 """Steps of the time integration where it is repeated to find a time; a test compares it with the fine one."""
 _LONGEST = 1e6
 """Seconds; a part that is not there after eleven days never is. Our choice."""
@@ -53,7 +53,7 @@ def opened(hub: Body, shaft: Body, *, diameter: float, seconds: float, air: floa
 def time_open(hub: Body, shaft: Body, *, needed: float, diameter: float, air: float) -> float:
     """Time in still air until hub and shaft open no more than what is needed [s]; 0 if they never did, inf if always.
 
-    The root of `opened` - needed: bracketed by doubling, then regula falsi (Illinois).
+    The root of `opened` - needed: bracketed by fourfold steps, then regula falsi (Illinois).
     needed  largest interference, with or without the play [mm on diameter]
     Validity: as `cooled_temperature`; hub and shaft are out of oven and cold for the same time.  Source: derived here.
 
@@ -71,7 +71,7 @@ def time_open(hub: Body, shaft: Body, *, needed: float, diameter: float, air: fl
         return 0.0
     high, at_high = 8.0, spare(8.0)
     while at_high > 0.0:
-        low, at_low, high = high, at_high, 2.0 * high
+        low, at_low, high = high, at_high, 4.0 * high
         if high > _LONGEST:
             return math.inf
         at_high = spare(high)

@@ -58,9 +58,10 @@ def oven(floor: Floor, join: Join, pair: Pair, most: float, needed: float, cap: 
     asked = wanted if wanted <= high else for_need(needed + SPARE, float(high))
     expansion = expansion_for("joining", "hub", pair.hub, temperature=100.0).value
     fewer = _up((asked - high) * expansion * pair.diameter)
-    less = f"chill the shaft, or take {show(fewer, 'um', 1)} less interference"
+    chill = "chill the shaft further" if heat.chills(floor.loaded.job.room) else "chill the shaft"
+    less = f"{chill}, or take {show(fewer, 'um', 1)} less interference"
     if fewer >= most:  # nothing would be left of it
-        less = "chill the shaft, or carry the hub faster"
+        less = f"{chill}, or carry the hub faster"
     if low > high:
         return (
             f"Heat alone does not do it: it takes {low} degC, and {high} degC is the most this hub may be set to. "
