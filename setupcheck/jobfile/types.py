@@ -34,7 +34,7 @@ def in_file_units(mm: float, info: ValidationInfo) -> str:
     return size_shown(mm, units_of(info))
 
 
-def _shown(given: object) -> str:
+def as_listed(given: object) -> str:
     """A list of plain values as it stands in the file, anything else quoted."""
     if isinstance(given, list) and all(isinstance(g, str | int | float) for g in given):
         return f"[{', '.join(notation.quoted(g).strip(chr(39)) for g in given[:4])}{', …' if len(given) > 4 else ''}]"
@@ -60,7 +60,7 @@ def _size(given: object, info: ValidationInfo) -> float:
 def _positive_size(given: object, info: ValidationInfo) -> float:
     value = notation.length(_scalar(given), units=units_of(info))
     if value <= 0.0:
-        raise ValueError(f"{_shown(given)} is not a size. Write a length above zero")
+        raise ValueError(f"{as_listed(given)} is not a size. Write a length above zero")
     return value
 
 
@@ -81,11 +81,11 @@ def _signed_error(given: object, info: ValidationInfo) -> float:
 
 def _range(given: object, info: ValidationInfo) -> tuple[float, float]:
     if not isinstance(given, list | str):
-        raise ValueError(f"{_shown(given)} is not a range. Write the smallest and the largest: [2 um, 14 um]")
+        raise ValueError(f"{as_listed(given)} is not a range. Write the smallest and the largest: [2 um, 14 um]")
     low, high = notation.length_range(given, units=units_of(info), unit_needed=True)
     if low < 0.0:
         raise ValueError(
-            f"{_shown(given)} begins below zero, and a negative clearance is an interference. "
+            f"{as_listed(given)} begins below zero, and a negative clearance is an interference. "
             "Write 0 um or more, or join the parts by press or shrink"
         )
     return low, high
@@ -97,21 +97,21 @@ def _amount(given: object, info: ValidationInfo) -> Amount:
 
 def _amounts(given: object, info: ValidationInfo) -> tuple[Amount, Amount]:
     if not isinstance(given, list) or len(given) != 2:
-        raise ValueError(f"{_shown(given)} is not a pair of limits. Write [20 um, 80 um]")
+        raise ValueError(f"{as_listed(given)} is not a pair of limits. Write [20 um, 80 um]")
     low, high = (_amount(g, info) for g in given)
     if low.dimension != high.dimension:
-        raise ValueError(f"{_shown(given)} has limits in two kinds of unit. Write both in one, as in [20 um, 80 um]")
+        raise ValueError(f"{as_listed(given)} has limits in two kinds of unit. Write both in one, as in [20 um, 80 um]")
     if low.value > high.value:
-        raise ValueError(f"{_shown(given)} runs from high to low. Write {_shown(given[::-1])}")
+        raise ValueError(f"{as_listed(given)} runs from high to low. Write {as_listed(given[::-1])}")
     return low, high
 
 
 def _service(given: object, info: ValidationInfo) -> tuple[float, float]:
     if not isinstance(given, list) or len(given) != 2:
-        raise ValueError(f"{_shown(given)} is not a span of temperatures. Write [5 degC, 45 degC]")
+        raise ValueError(f"{as_listed(given)} is not a span of temperatures. Write [5 degC, 45 degC]")
     low, high = (notation.temperature(_scalar(g)) for g in given)
     if low > high:
-        raise ValueError(f"{_shown(given)} runs from warm to cold. Write the colder one first")
+        raise ValueError(f"{as_listed(given)} runs from warm to cold. Write the colder one first")
     return low, high
 
 

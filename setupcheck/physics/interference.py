@@ -15,6 +15,8 @@ from setupcheck.record import record
 SMOOTHING_FACTOR = 0.8
 """Share of the two Rz lost on diameter. Source: DIN 7190:1988/2001 (from memory); the 2017 edition is said, in a secondary
 text not checked, to use 0.4. 0.8 is the safe end for holding; for strength take no loss at all."""
+LOWER_SMOOTHING_FACTOR = 0.4
+"""The factor that the 2017 edition of DIN 7190 is said to use, see above. Source: a secondary text, not checked."""
 DUCTILE = "modified shear stress, limit at yield / sqrt(3)"
 """Name of the criterion for ductile parts. Source: DIN 7190 (from memory)."""
 BRITTLE = "tangential stress at the bore against tensile strength"

@@ -11,6 +11,8 @@ from setupcheck.quantities.book import Open, Scope
 from setupcheck.quantities.gates import Gate
 from setupcheck.quantities.judged import Result
 from setupcheck.report.causes import cause_in_words
+from setupcheck.report.heating_plan import heating_plans
+from setupcheck.report.joint import joints
 from setupcheck.report.remedies import remedy_in_words
 from setupcheck.report.uncomputed import in_lines, uncomputed
 from setupcheck.report.wording import as_stated, clean, finer, in_unit, on_the_dial, title_of, unit_of, wrap
@@ -35,6 +37,8 @@ def as_text(found: Review, *, everything: bool = False) -> str:
         _stops(found),
         _findings(found, everything),
         _requirements(found, everything),
+        joints(found),
+        heating_plans(found),
         _worked_out(found),
         _uncomputed(found),
         _gates(found),

@@ -39,6 +39,7 @@ READ = {
     "Centre": "on by at runout clearance rests x y grip grip_force through turned",
     "Square": "on by face_runout across chip",
     "Spacer": "name length",
+    "MeasuredPair": "name bore journal uncertainty",
     "Stop": "on against error touches radius direction spacers",
     "Clock": "on number error",
     "Hold": "centre and_centre square stop clock",
