@@ -141,7 +141,8 @@ class Pressed:
         place[free] = np.arange(free.size)
         rows, columns = np.concatenate([free, walls[1]]), np.concatenate([place[free], place[walls[0]]])
         follow = csr_matrix((np.ones(rows.size), (rows, columns)), shape=(every.shape[0], free.size))
-        return jump + follow @ spsolve((follow.T @ every @ follow).tocsc(), -follow.T @ (every @ jump))
+        whole, load = (follow.T @ every @ follow).tocsc(), -follow.T @ (every @ jump)
+        return jump + follow @ spsolve(whole, load, permc_spec="MMD_AT_PLUS_A")  # symmetric, so this order fills least
 
     def _rests(self, first: int) -> NDArray[np.int64]:
         """What holds both parts without a force: the axis stays on itself, one node of each keeps its height."""
