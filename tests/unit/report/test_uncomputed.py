@@ -8,7 +8,7 @@ import json
 import pytest
 from pydantic import BaseModel
 
-from setupcheck.jobfile import models, setups
+from setupcheck.jobfile import models, properties, setups
 from setupcheck.report.json import as_json
 from setupcheck.report.text import as_text
 from setupcheck.report.uncomputed import NOT_LOOKED_AT, in_lines, uncomputed
@@ -24,7 +24,8 @@ READ = {
     "Pattern": "kind count on_circle at diameter width angle made",
     "Relation": "of about from_ runout face_runout across length",
     "Part": "material surfaces given",
-    "Properties": "modulus poisson expansion yield_strength tensile_strength brittle density specific_heat heat_cap last_temper",
+    "Properties": "modulus poisson expansion yield_strength tensile_strength brittle density specific_heat "
+    "conductivity heat_cap last_temper porous",
     "Worm": "starts hand axial_module reference_diameter tip_diameter pressure_angle end_float",
     "Mesh": "wheel centre_distance shift",
     "Cutter": "kind bar_diameter overhang",
@@ -61,7 +62,7 @@ READ = {
 
 RECORDS = {
     name: record
-    for module in (models, setups)
+    for module in (models, properties, setups)
     for name, record in vars(module).items()
     if inspect.isclass(record)
     and issubclass(record, BaseModel)
