@@ -96,6 +96,17 @@ def test_everything_a_shrunk_joint_states_is_looked_at_and_of_a_screwed_one_noth
     assert "roughness Rz 2.5 um of bore" in screwed
 
 
+def test_properties_that_nothing_computes_with_are_told_with_their_units() -> None:
+    stated = "{density: 8700, poisson: 0.34, specific_heat: 373, conductivity: 52 W/mK, porous: true}"
+    screwed = changed(
+        WHEEL,
+        ("by: shrink", "by: screw"),
+        ("  spindle:\n", f"  spindle:\n    properties: {stated}\n"),
+    )
+    said = " ".join(told(screwed))
+    assert "density 8700 kg/m3, poisson 0.34, specific heat 373 J/kgK, conductivity 52 W/mK, porous" in said
+
+
 def test_of_a_pressed_joint_only_the_heat_is_told() -> None:
     pressed = " ".join(told(changed(WHEEL, ("by: shrink", "by: press"))))
     assert "grips first at the shoulder-end" in pressed
