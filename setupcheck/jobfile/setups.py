@@ -17,7 +17,6 @@ from setupcheck.jobfile.models import (
     Place,
     Require,
     RunOut,
-    Shop,
     Waive,
     Worm,
 )
@@ -32,6 +31,7 @@ from setupcheck.jobfile.types import (
     Fraction,
     Length,
     Play,
+    Shop,
     Size,
     Temperature,
     TemperatureDifference,

@@ -1,4 +1,4 @@
-"""Values of the job file in shop notation, as pydantic types. Inside: mm, rad, degC, N, N mm, s."""
+"""Values of the job file in shop notation, as pydantic types, and what all records share. Inside: mm, rad, degC, N, N mm, s."""
 
 from __future__ import annotations
 
@@ -6,7 +6,7 @@ import re
 from collections.abc import Callable
 from typing import Annotated, Literal
 
-from pydantic import BeforeValidator, ValidationError, ValidationInfo, WithJsonSchema
+from pydantic import BaseModel, BeforeValidator, ConfigDict, ValidationError, ValidationInfo, WithJsonSchema
 from pydantic_core import InitErrorDetails, PydanticCustomError
 
 from setupcheck import notation
@@ -16,6 +16,12 @@ Given = str | int | float
 TEXT_OR_NUMBER = WithJsonSchema({"type": ["string", "number"]})
 TEXT = WithJsonSchema({"type": "string"})
 INCH = 25.4  # mm, exactly (international yard and pound agreement, 1959)
+
+
+class Shop(BaseModel):
+    """A record of the job file: frozen, and no unknown keys."""
+
+    model_config = ConfigDict(extra="forbid", frozen=True, coerce_numbers_to_str=True, defer_build=True)
 
 
 def units_of(info: ValidationInfo) -> Literal["mm", "in"]:
@@ -213,6 +219,8 @@ Pressure = Annotated[float, _plain(notation.pressure), TEXT]
 """A stress or modulus [MPa]; the unit must be written."""
 Expansion = Annotated[float, _plain(notation.expansion), TEXT]
 """A thermal expansion [1/K]; the unit must be written."""
+Conductivity = Annotated[float, _plain(notation.conductivity), TEXT]
+"""A heat conductivity [W/mK]; the unit must be written."""
 Roughness = Annotated[notation.Roughness, BeforeValidator(lambda given: notation.roughness(_scalar(given))), TEXT]
 """A roughness with its figure, Ra or Rz."""
 Duration = Annotated[float, _plain(notation.duration), TEXT]

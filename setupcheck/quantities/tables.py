@@ -19,7 +19,9 @@ from setupcheck.quantities.measuring import MEASURE
 from setupcheck.quantities.meshing import MESHING
 from setupcheck.quantities.placing import PLACE
 from setupcheck.quantities.pressing import PRESSING
+from setupcheck.quantities.stated import STATED
 from setupcheck.quantities.strength import STRENGTH
+from setupcheck.quantities.through import THROUGH
 from setupcheck.quantities.tilting import TILT
 
 ROUTE = (
@@ -258,7 +260,9 @@ TABLES: tuple[Quantity, ...] = (
     *GROWING,
     *CHOOSING,
     *PRESSING,
+    *STATED,
     *HEAT,
+    *THROUGH,
     *CUTTING,
     *SHAPE,
     *MESHING,

@@ -20,6 +20,7 @@ from setupcheck.physics.heating import (
     KELVIN,
     STEFAN_BOLTZMANN,
     Ring,
+    biot_number,
     carry_time,
     cooled_temperature,
     film_coefficient,
@@ -104,8 +105,9 @@ def test_incropera_5_3_a_coated_sheet_is_heated_and_then_cooled_with_radiation()
 
 
 def test_cengel_4_1_a_small_junction_takes_ten_seconds() -> None:
-    """Sphere 1 mm, h 210, 8500 kg/m3, 320 J/kgK: 99 % of the difference is gone in 10 s (9.94)."""
+    """Sphere 1 mm, h 210, k 35, 8500 kg/m3, 320 J/kgK: Bi 0.001; 99 % of the difference is gone in 10 s (9.94)."""
     junction = sphere(1.0, density=8500, heat=320)
+    assert 0.001 == pytest.approx(biot_number(210, depth=junction.depth, conductivity=35), rel=1e-3)
     assert 9.94 == pytest.approx(carry_time(junction, start=100, until=1, air=0, film=210), abs=0.01)
     # the rate is h A / m c = 0.4632 per second (computed for this project)
     assert 0.4632 == pytest.approx(

@@ -142,6 +142,8 @@ QUANTITIES: Mapping[str, FakeQuantity] = {
         FakeQuantity("divide.advice", "setup", "", 0),
         FakeQuantity("place.shim", "place", "", 0),
         FakeQuantity("fit.load_stated", "join", "", 0),
+        FakeQuantity("fit.odd_properties", "part", "", 0),
+        FakeQuantity("fit.elastic_kind", "join", "", 0),
         FakeQuantity("fit.press_force", "join", "N", 0),
         FakeQuantity("fit.press_allowed", "join", "N", 0),
         FakeQuantity("mesh.least_backlash", "stack", "mm", 4),
