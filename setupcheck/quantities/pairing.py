@@ -15,7 +15,7 @@ from setupcheck.quantities.friction import Friction, friction
 from setupcheck.quantities.joining import JointSizes
 from setupcheck.quantities.joint_shape import Section, sections
 from setupcheck.quantities.shop import Floor
-from setupcheck.quantities.stuff import material_of
+from setupcheck.quantities.stuff import material_of, porous
 from setupcheck.record import record
 
 FITTED = ("shrink", "press")
@@ -75,6 +75,8 @@ def pair(floor: Floor, join: Join, sizes: JointSizes) -> Pair | Open | None:
     if shape is None:
         return None
     outer, inner = floor.loaded.ref(join.outer).part, floor.loaded.ref(join.inner).part
+    if any(porous(floor.loaded.job.parts[name]) for name in (outer, inner)):
+        return Open(because="sintered metal crushes into its pores, so no elastic figure holds for this joint")
     hub, shaft = material_of(floor, outer), material_of(floor, inner)
     opened = [x for x in (shape, hub, shaft) if isinstance(x, Open)]
     if isinstance(shape, Open) or isinstance(hub, Open) or isinstance(shaft, Open):

@@ -7,10 +7,11 @@ from setupcheck.jobfile.setups import Join
 from setupcheck.notation import plain
 from setupcheck.physics.materials import Range
 from setupcheck.quantities.book import Open, Quantity
-from setupcheck.quantities.contents import is_porous, material_class, material_family
+from setupcheck.quantities.contents import material_class, material_family
 from setupcheck.quantities.material_classes import usual_for
 from setupcheck.quantities.pairing import FITTED
 from setupcheck.quantities.shop import Floor
+from setupcheck.quantities.stuff import porous
 from setupcheck.record import record
 
 USUAL = "usual"
@@ -64,15 +65,6 @@ def odd_properties(part: Part, name: str) -> str | None:
         if not _inside(value, getattr(usual, key))
     ]
     return "; ".join(odd) or USUAL
-
-
-def porous(part: Part) -> bool | None:
-    """Whether a part has pores, by `porous: true` or by the name of its material; None where nothing is said of it."""
-    if part.properties is not None and part.properties.porous:
-        return True
-    if part.material is None:
-        return None if part.properties is None else False
-    return is_porous(part.material)
 
 
 def elastic_kind(floor: Floor, join: Join) -> str | Open | None:

@@ -10,7 +10,7 @@ from setupcheck.jobfile.models import Part
 from setupcheck.jobfile.properties import Properties
 from setupcheck.physics.materials import Material, Range, Value, temper_cap
 from setupcheck.quantities.book import Open
-from setupcheck.quantities.contents import material_class, material_family
+from setupcheck.quantities.contents import is_porous, material_class, material_family
 from setupcheck.quantities.material_data import UnknownMaterial, material
 from setupcheck.quantities.shop import Floor
 
@@ -41,6 +41,15 @@ def expansion_of(name: str, path: str) -> Range | Open:
     """Mean expansion of a worm or a housing by the name of its material [1/K]. Source: materials.yaml."""
     found = material(name)
     return found.heating if isinstance(found, Material) else Open((path,), found.because)
+
+
+def porous(part: Part) -> bool | None:
+    """Whether a part has pores, by `porous: true` or by the name of its material; None where nothing is said of it."""
+    if part.properties is not None and part.properties.porous:
+        return True
+    if part.material is None:
+        return None if part.properties is None else False
+    return is_porous(part.material)
 
 
 def strength_of(floor: Floor, part: str, found: Material) -> float | Open:
