@@ -106,20 +106,21 @@ def _measured(floor: Floor, ref: Ref) -> bool:
     return getattr(size, "measured", None) is not None
 
 
-def pairs_said(floor: Floor, join: Join, window: Window, op: int) -> str | Open | None:
-    """Which measured pair suits best, with what each other one has; None where the job lists none.
+def listed(join: Join) -> tuple[MeasuredPair, ...] | None:
+    """Measured pairs that the job lists; None where it lists none. Source: the job file."""
+    return join.pairs or None
+
+
+def pairs_said(pairs: tuple[MeasuredPair, ...], window: Window, op: int) -> str | Open:
+    """Which measured pair suits best.
 
     Each pair by its interference less and plus both uncertainties; the best stands nearest to the middle of the window.
     Source: `window`, the job file.
     """
-    if not join.pairs:
-        return None
-    missing = tuple(
-        f"setups.{op}.join.pairs[{i}].uncertainty" for i, p in enumerate(join.pairs, 1) if p.uncertainty is None
-    )
+    missing = tuple(f"setups.{op}.join.pairs[{i}].uncertainty" for i, p in enumerate(pairs, 1) if p.uncertainty is None)
     if missing:
         return Open(missing)
-    good = [p for p in join.pairs if _inside(p, window)]
+    good = [p for p in pairs if _inside(p, window)]
     if not good:
         return "none of the measured pairs suits"
     middle = (window.low + window.high) / 2.0
@@ -127,13 +128,11 @@ def pairs_said(floor: Floor, join: Join, window: Window, op: int) -> str | Open 
     return f"{FITS}: {best.name}"
 
 
-def pairs_told(floor: Floor, join: Join, window: Window) -> str | None:
-    """Each measured pair with its interference, and what speaks against it; None where there are none. Source: `pairs_said`."""
-    if not join.pairs:
-        return None
+def pairs_told(pairs: tuple[MeasuredPair, ...], floor: Floor, window: Window) -> str:
+    """Each measured pair with its interference, and what speaks against it. Source: `pairs_said`."""
     fine, places = ("thou", 2) if floor.loaded.job.units == "in" else ("um", 1)
     low, high = show(window.low, fine, places), show(window.high, fine, places)
-    each = ", ".join(f"{p.name} {show(p.journal - p.bore, fine, places)} ({_verdict(p, window)})" for p in join.pairs)
+    each = ", ".join(f"{p.name} {show(p.journal - p.bore, fine, places)} ({_verdict(p, window)})" for p in pairs)
     return f"{each}; {low} to {high} suits"
 
 
@@ -157,9 +156,11 @@ def _verdict(pair: MeasuredPair, window: Window) -> str:
 
 
 _HERE = {"floor": "route.floor", "join": ":"}
+_PAIRS = {"pairs": "fit.listed"}  # first: without them nothing else is asked for
 _WINDOW = {"window": "fit.window"}
 
 CHOOSING = (
+    Quantity("fit.listed", "join", "", 0, listed, {"join": ":"}, "measured pairs that the job lists"),
     Quantity(
         "fit.grip_needed",
         "join",
@@ -208,7 +209,7 @@ CHOOSING = (
         "what the measured half wants of the other",
     ),
     Quantity(
-        "fit.pairs", "join", "", 0, pairs_said, {**_HERE, **_WINDOW, "op": "@op"}, "which of the measured pairs suits"
+        "fit.pairs", "join", "", 0, pairs_said, {**_PAIRS, **_WINDOW, "op": "@op"}, "which of the measured pairs suits"
     ),
     Quantity(
         "fit.pairs_told",
@@ -216,7 +217,7 @@ CHOOSING = (
         "",
         0,
         pairs_told,
-        {**_HERE, **_WINDOW},
+        {**_PAIRS, "floor": "route.floor", **_WINDOW},
         "interference of each measured pair",
     ),
     Quantity("fit.pairs_fit", "join", "", 0, pairs_fit, {"said": "fit.pairs"}, "whether a measured pair suits"),

@@ -6,7 +6,7 @@ from collections.abc import Iterator
 
 from setupcheck.flow import Review
 from setupcheck.quantities.book import Scope
-from setupcheck.report.joint import fitted, in_words
+from setupcheck.report.joint import fitted, has_play, in_words
 from setupcheck.report.wording import wrap
 
 STEPS: tuple[tuple[str, ...], ...] = (
@@ -46,6 +46,6 @@ def heating_plans_as_data(found: Review) -> list[dict[str, object]]:
 
 def _plans(found: Review) -> Iterator[tuple[Scope, list[str]]]:
     for scope, join in fitted(found):
-        steps = in_words(found, scope, STEPS) if join.by == "shrink" else []
+        steps = in_words(found, scope, STEPS) if join.by == "shrink" and not has_play(found, scope) else []
         if steps:
             yield scope, steps

@@ -48,6 +48,7 @@ BENEATH: tuple[tuple[str, ...], ...] = (
     ("measured pairs, {fit.pairs}; {fit.pairs_told}",),
 )
 """Lines under the table, each with its shorter forms: the first of them whose numbers are all known is said."""
+PLAY = "{fit.said}, on diameter: no interference, so no pressure and nothing held"
 FITTING = {"shrink": "shrunk", "press": "pressed"}
 
 
@@ -57,6 +58,12 @@ def fitted(found: Review) -> Iterator[tuple[Scope, Join]]:
         join = scope.node
         if isinstance(join, Join) and join.by in FITTED and found.book.get("fit.interference_most", scope) is not None:
             yield scope, join
+
+
+def has_play(found: Review, scope: Scope) -> bool:
+    """Whether bore and journal have play over all their limits: there is no interference, hence no pressure and no heat."""
+    most = found.book.get("fit.interference_most", scope)
+    return isinstance(most, Known) and float(most.value) <= 0.0  # type: ignore[arg-type]
 
 
 def joints(found: Review) -> Iterator[str]:
@@ -81,6 +88,9 @@ def _table(found: Review, scope: Scope, join: Join) -> Iterator[str]:
         f"JOINT, op {scope.op}: {outer} on {inner}, {FITTING[join.by]}; grip on diameter, thick rings in plane stress",
         rest="  ",
     )
+    if has_play(found, scope):
+        yield from wrap(filled(found, scope, PLAY), first="  - ", rest="    ")
+        return
     yield " " * LABEL + "tightest pair".rjust(3 * CELL) + "loosest, smoothed".rjust(3 * CELL) + ""
     yield " " * LABEL + "".join(word.rjust(CELL) for word in HEADS)
     yield " " * LABEL + "".join(_unit(found, scope, column).rjust(CELL) for column in COLUMNS)

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import math
+import re
 
 import pytest
 
@@ -11,7 +12,10 @@ from setupcheck.flow import review
 from setupcheck.jobfile.reading import read_job_text
 from setupcheck.physics import interference as fits
 from setupcheck.quantities.pairing import Pair
+from setupcheck.report.heating_plan import heating_plans
 from setupcheck.report.joint import joints
+from setupcheck.report.text import as_text
+from tests.unit.report.sample import flat
 
 from .joint_text import changed, number, reviewed, value
 
@@ -117,3 +121,25 @@ def test_the_table_has_every_state_and_says_open_where_a_number_is_missing() -> 
     assert ["open"] * 6 == rows[0].split()[-6:] == rows[2].split()[-6:]
     assert "open" not in rows[1]
     assert math.isfinite(float(rows[1].split()[-1]))
+
+
+def test_a_joint_with_play_has_no_table_no_heating_plan_and_says_the_play() -> None:
+    loose = changed(("diameter: 60 r6", "diameter: 60 g6"))
+    said = flat("\n".join((*joints(reviewed(loose)), *heating_plans(reviewed(loose)))))
+    # 60 H6 0/+19, g6 -10/-29 (ISO 286)
+    assert "play 10.0 um to 48.0 um at 20 degC, on diameter: no interference, so no pressure and nothing held" in said
+    assert "tightest pair" not in said
+    assert "HEATING PLAN" not in said
+
+
+def test_a_torque_that_is_asked_of_a_loose_joint_is_nothing_and_not_less() -> None:
+    loose = changed(("diameter: 60 r6", "diameter: 60 g6")) + "require: [{what: torque, of: 10, at_least: 50 N m}]\n"
+    (found,) = (f for f in reviewed(loose).evaluation.findings if f.rule == "STACK-002")
+    assert ("fail", 0.0) == (found.verdict, found.value)
+    assert "may fall to 0.0 N m" in found.message
+
+
+def test_rules_that_wait_for_one_number_at_one_place_are_told_together() -> None:
+    text = as_text(reviewed(changed(("material: CuSn12-C", "material: CuSn13-C"))))
+    assert 1 == flat(text).count("Nearest: CuSn12-C")
+    assert re.search(r"open  FIT-003, FIT-004, FIT-\d+", text)
