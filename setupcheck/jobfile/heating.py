@@ -5,8 +5,7 @@ from typing import Literal, Self
 
 from pydantic import model_validator
 
-from setupcheck.jobfile.models import Shop
-from setupcheck.jobfile.types import Coolant, Duration, Size, Temperature, TemperatureDifference, Volume
+from setupcheck.jobfile.types import Coolant, Duration, Shop, Size, Temperature, TemperatureDifference, Volume
 
 COLDEST = {"dry-ice": -78.5, "liquid-nitrogen": -196.0}
 """degC that a means of cooling reaches. Source: sublimation and boiling point, published (pages opened)."""
