@@ -11,7 +11,7 @@ from setupcheck.notation import nearest, quoted
 from setupcheck.physics.materials import EVIDENCE, FAMILIES, Material, Range, Value
 from setupcheck.record import record
 from setupcheck.shipped import shipped
-from setupcheck.yamlfile import Data, Path, Tree, parse, read_text
+from setupcheck.yamlfile import Data, Path, Tree, parse_plain, read_text
 
 FILE = "rules/data/materials.yaml"
 _FORMAT = 1
@@ -75,7 +75,7 @@ def read_materials(text: str, file: str) -> dict[str, Material]:
 
     Raises: JobError for broken YAML, SetupcheckError for an entry that is wrong or missing, with its line.
     """
-    tree = parse(text, file)
+    tree = parse_plain(text, file)
     data = tree.data
     if not isinstance(data, dict) or data.get("format") != _FORMAT or not isinstance(data.get("materials"), dict):
         raise SetupcheckError(f"{file}: 'format: {_FORMAT}' and a map 'materials' are needed")
