@@ -9,10 +9,12 @@ from typing import NoReturn
 
 # One thread is enough for the small matrices here, and starting more would cost more than the whole review.
 os.environ.setdefault("OPENBLAS_NUM_THREADS", "1")
-# Looking for plugins of other packages reads the metadata of everything that is installed; none belongs in this command.
-os.environ.setdefault("PYDANTIC_DISABLE_PLUGINS", "1")
 # A command lives for a fraction of a second: looking for cycles while everything is being imported only delays it.
 gc.set_threshold(200_000)
+
+from setupcheck.cli import plugins  # noqa: E402
+
+plugins.leave_out()
 
 import typer  # noqa: E402
 
