@@ -9,7 +9,9 @@ from __future__ import annotations
 
 from collections.abc import Callable
 from dataclasses import MISSING, FrozenInstanceError, dataclass, field, fields
+from functools import cache
 from operator import attrgetter
+from types import CodeType, FunctionType
 from typing import Any, NoReturn, TypeVar, dataclass_transform, overload
 
 T = TypeVar("T")
@@ -69,6 +71,40 @@ def _first_init(self: Any, *args: object, **given: object) -> None:
 
 def _written_init(cls: Any) -> Callable[..., None]:
     """`__init__` with the fields as its arguments. A slot is set by its own descriptor, as nothing else can set it."""
+    plain = all(f.init and f.default_factory is MISSING for f in fields(cls)) and not hasattr(cls, "__post_init__")
+    return _named_init(cls) if plain else _compiled_init(cls)
+
+
+def _named_init(cls: Any) -> Callable[..., None]:
+    """A constructor that only sets fields: compiled once for each number of fields, here given the names of these."""
+    ordered = sorted(fields(cls), key=lambda f: bool(f.kw_only))  # those by keyword only come last
+    by_name = [f for f in ordered if f.kw_only]
+    code = _setting(len(ordered)).replace(
+        co_name="__init__",
+        co_varnames=("self", *(f.name for f in ordered)),
+        co_argcount=1 + len(ordered) - len(by_name),
+        co_kwonlyargcount=len(by_name),
+    )
+    setters = {f"_set_{number}": getattr(cls, f.name).__set__ for number, f in enumerate(ordered)}
+    defaults = tuple(f.default for f in ordered if f.default is not MISSING and not f.kw_only)
+    init = FunctionType(code, setters, "__init__", defaults)
+    init.__kwdefaults__ = {f.name: f.default for f in by_name if f.default is not MISSING}
+    init.__qualname__ = f"{cls.__qualname__}.__init__"
+    return init
+
+
+@cache
+def _setting(count: int) -> CodeType:
+    """Code of a function that sets so many fields of its first argument to the others."""
+    names = [f"_{number}" for number in range(count)]
+    lines = "\n".join(f" _set{name}(self, {name})" for name in names) or " pass"
+    found: dict[str, FunctionType] = {}
+    exec(f"def init({', '.join(['self', *names])}):\n{lines}", found)  # no text from anywhere else
+    return found["init"].__code__
+
+
+def _compiled_init(cls: Any) -> Callable[..., None]:
+    """A constructor of a record with made-up defaults, fields that are no arguments, or work to do at the end."""
     known: dict[str, object] = {}
     arguments: dict[bool, list[str]] = {False: [], True: []}  # those by keyword only come last
     lines: list[str] = []

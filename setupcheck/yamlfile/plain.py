@@ -7,6 +7,7 @@ from __future__ import annotations
 
 import re
 from collections.abc import Iterator
+from functools import lru_cache
 from typing import Any
 
 import yaml
@@ -82,6 +83,7 @@ def _read(events: Iterator[Any]) -> Data:
     return top[0] if top else None
 
 
+@lru_cache  # few words are keys, and each of them again and again
 def _is_plain_key(word: str, *, quoted: bool) -> bool:
     """Whether no reader could take the key for anything else."""
     if not word.strip() or len(word) > limits.LONGEST_KEY or "\n" in word:
