@@ -20,14 +20,15 @@ T = TypeVar("T")
 @overload
 def record(cls: type[T], /) -> type[T]: ...
 @overload
-def record(*, eq: bool = True, kw_only: bool = False) -> Callable[[type[T]], type[T]]: ...
+def record(*, eq: bool = True, kw_only: bool = False, frozen: bool = True) -> Callable[[type[T]], type[T]]: ...
 @dataclass_transform(frozen_default=True, field_specifiers=(field,))
 def record(
-    cls: type[T] | None = None, /, *, eq: bool = True, kw_only: bool = False
+    cls: type[T] | None = None, /, *, eq: bool = True, kw_only: bool = False, frozen: bool = True
 ) -> type[T] | Callable[[type[T]], type[T]]:
     """The class as a frozen record: fields as in a dataclass, kept in slots, set once.
 
-    eq  compare and hash by the fields; without it a record is equal to itself alone, or as its own `__eq__` says
+    eq      compare and hash by the fields; without it a record is equal to itself alone, or as its own `__eq__` says
+    frozen  False for what is filled on the way: its fields may be set again, and it is equal to itself alone
 
     >>> @record
     ... class Span:
@@ -40,18 +41,14 @@ def record(
     dataclasses.FrozenInstanceError: a Span cannot change its low
     """
     if cls is None:
-        return lambda cls: _made(cls, eq=eq, kw_only=kw_only)
-    return _made(cls, eq=eq, kw_only=kw_only)
+        return lambda cls: _made(cls, eq=eq and frozen, kw_only=kw_only, frozen=frozen)
+    return _made(cls, eq=eq and frozen, kw_only=kw_only, frozen=frozen)
 
 
-def _made(cls: type[T], *, eq: bool, kw_only: bool) -> type[T]:
-    shared: dict[str, object] = {
-        "__init__": _first_init,
-        "__repr__": _repr,
-        "__setattr__": _refuse_to_set,
-        "__delattr__": _refuse_to_delete,
-        "__reduce__": _reduce,
-    }
+def _made(cls: type[T], *, eq: bool, kw_only: bool, frozen: bool) -> type[T]:
+    shared: dict[str, object] = {"__init__": _first_init, "__repr__": _repr, "__reduce__": _reduce}
+    if frozen:
+        shared |= {"__setattr__": _refuse_to_set, "__delattr__": _refuse_to_delete}
     if eq:
         shared |= {"__eq__": _eq, "__hash__": _hash}
     for name, method in shared.items():

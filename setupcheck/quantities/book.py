@@ -8,7 +8,7 @@ from __future__ import annotations
 
 import math
 from collections.abc import Callable, Iterator, Mapping, Sequence
-from dataclasses import dataclass, field
+from dataclasses import field
 from typing import Protocol, runtime_checkable
 
 from setupcheck.record import record
@@ -33,7 +33,7 @@ class HasUnit(Protocol):
     def digits(self) -> int: ...
 
 
-@dataclass(frozen=True, eq=False)
+@record(eq=False)
 class Scope:
     """One thing of the job that can own numbers.
 

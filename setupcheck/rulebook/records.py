@@ -6,7 +6,6 @@ Plain frozen data. Limits are in base units (mm, rad, degC, N, MPa, s); shares a
 from __future__ import annotations
 
 from collections.abc import Callable, Mapping
-from dataclasses import dataclass
 from typing import Literal
 
 from setupcheck.record import record
@@ -34,7 +33,7 @@ GENERIC_FIELDS = ("value", "limit", "surface", "op", "name")
 """The only fields a message may hold."""
 
 
-@dataclass(frozen=True, slots=True, order=True)
+@record
 class Place:
     """A line of a rule file."""
 

@@ -7,13 +7,14 @@ read, and nothing is nested by recursion, so that no depth of brackets can break
 from __future__ import annotations
 
 import re
-from dataclasses import dataclass, replace
+from dataclasses import replace
 from functools import cache
 from typing import Protocol
 
 import yaml
 
 from setupcheck.errors import JobError, Problem
+from setupcheck.record import record
 from setupcheck.yamlfile import limits
 from setupcheck.yamlfile.plain import LOADER, plain_data
 from setupcheck.yamlfile.scalars import LookAlike, Scalar, plain_scalar
@@ -60,7 +61,7 @@ def parse_plain(text: str, file: str) -> Tree:
     return Tree(data, file, text.split("\n"), (), cache(lambda: parse(text, file).root))
 
 
-@dataclass(slots=True)
+@record(frozen=False)
 class _Open:
     """A list or map that is being filled. key: of the value to come (a map), None while a key is awaited."""
 

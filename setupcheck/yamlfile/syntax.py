@@ -4,11 +4,11 @@ from __future__ import annotations
 
 import re
 from collections.abc import Sequence
-from dataclasses import dataclass
 
 import yaml
 
 from setupcheck.errors import Problem
+from setupcheck.record import record
 from setupcheck.yamlfile.limits import MOST_PROBLEMS
 from setupcheck.yamlfile.tree import Path, Place
 
@@ -93,7 +93,7 @@ def without_odd_characters(text: str) -> str:
     return ODD.sub("?", text).replace("\t", " ")
 
 
-@dataclass(slots=True)
+@record(frozen=False)
 class CommaRun:
     """Values in brackets that are parted by commas straight between digits: `0,5 um` or `2.0,1.0,0.3`.
 

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Callable, Iterable, Sequence
-from dataclasses import dataclass, field
+from dataclasses import field
 from typing import TypeAlias
 
 from setupcheck.errors import Problem
@@ -26,7 +26,7 @@ class Place:
     length: int
 
 
-@dataclass(slots=True)
+@record(frozen=False)
 class Node:
     """One value with its place, the place of its key (of itself, in a list), and what is inside it."""
 
