@@ -61,7 +61,7 @@ def backlash_swing(eccentricity: float, pressure_angle: float) -> float:
 
 def division_arcs(
     pattern: Pattern,
-    index_waves: list[Complexes],
+    index_waves: Sequence[Reals | Complexes],
     drifts: list[Reals],
     each: list[Reals],
     trials: int,
