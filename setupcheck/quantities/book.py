@@ -9,7 +9,6 @@ from __future__ import annotations
 import math
 from collections.abc import Callable, Iterator, Mapping, Sequence
 from dataclasses import field
-from typing import Protocol, runtime_checkable
 
 from setupcheck.record import record
 
@@ -17,20 +16,11 @@ SINGLE = frozenset({"job", "place", "worm", "mesh"})
 """Kinds of thing of which a job has at most one, so they are found from anywhere."""
 
 BY_INSTANCE = "stack"
-"""Unit of a quantity whose unit belongs to its instance: one stack counts in um, the next in arcsec."""
+"""Unit of a quantity whose unit belongs to its instance: one stack counts in um, the next in arcsec. Its record says in
+which, and with how many decimals, under `unit` and `digits`."""
 
 INCH = {"um": "thou", "mm": "in"}
 """What an inch file shows instead; one decimal more goes with it."""
-
-
-@runtime_checkable
-class HasUnit(Protocol):
-    """A record that says itself in which unit, and with how many decimals, its numbers are shown."""
-
-    @property
-    def unit(self) -> str: ...
-    @property
-    def digits(self) -> int: ...
 
 
 @record(eq=False)
@@ -155,16 +145,16 @@ class Book:
     def unit(self, name: str, at: Scope) -> str:
         """Display unit of a quantity at an instance."""
         unit = self.quantities[name].unit
-        if unit == BY_INSTANCE and isinstance(at.node, HasUnit):
-            unit = at.node.unit
+        if unit == BY_INSTANCE:
+            unit = getattr(at.node, "unit", unit)
         return INCH.get(unit, unit) if self.inches else unit
 
     def digits(self, name: str, at: Scope) -> int:
         """Decimals shown of a quantity at an instance."""
         quantity = self.quantities[name]
         digits = quantity.digits
-        if quantity.unit == BY_INSTANCE and isinstance(at.node, HasUnit):
-            digits = at.node.digits
+        if quantity.unit == BY_INSTANCE:
+            digits = getattr(at.node, "digits", digits)
         return digits + (self.inches and self.unit(name, at) in INCH.values())
 
     def _make(self, quantity: Quantity, home: Scope) -> Answer:
