@@ -60,7 +60,9 @@ class Entry:
 
     def text(self, key: str) -> str:
         """The text of a key that has to be there and not blank."""
-        return self.need(key).scalar_text()
+        said = self._map().get(key)
+        plain_text = " ".join(said.split()) if isinstance(said, str) else ""
+        return plain_text or self.need(key).scalar_text()
 
     def text_or(self, key: str, otherwise: str) -> str:
         """The text of a key, or what stands in for it."""

@@ -52,7 +52,7 @@ def plain_scalar(text: str) -> Scalar | LookAlike:
     found = _NUMBER.fullmatch(text)
     if not found:
         return _other_spelling(text)
-    if sum(character.isdigit() for character in text) > MOST_DIGITS:
+    if len(text) > MOST_DIGITS and sum(character.isdigit() for character in text) > MOST_DIGITS:
         return LookAlike("the number has too many digits", "Write it shorter, or in quotes if it is text")
     if zeros := _LEADING_ZERO.fullmatch(text):
         sign, rest = zeros.groups()
