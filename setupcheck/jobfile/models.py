@@ -8,31 +8,29 @@ from typing import Annotated, Literal, Self
 
 from pydantic import (
     AfterValidator,
-    BaseModel,
     BeforeValidator,
-    ConfigDict,
     Field,
     ValidationInfo,
     model_validator,
 )
 
 from setupcheck import notation
+from setupcheck.jobfile.properties import Properties
 from setupcheck.jobfile.types import (
     Angle,
     AngleBound,
     Bound,
     Division,
-    Expansion,
     Force,
     Housing,
     Length,
     Limit,
     Limits,
-    Pressure,
     Read,
     Reading,
     Roughness,
     Service,
+    Shop,
     Size,
     Speed,
     Temperature,
@@ -40,12 +38,6 @@ from setupcheck.jobfile.types import (
     in_file_units,
     units_of,
 )
-
-
-class Shop(BaseModel):
-    """A record of the job file."""
-
-    model_config = ConfigDict(extra="forbid", frozen=True, coerce_numbers_to_str=True, defer_build=True)
 
 
 class Dimension(Shop):
@@ -271,27 +263,6 @@ class Relation(Shop):
                 "face_runout needs the circle it was read on. Write across: and the diameter of that circle"
             )
         return self
-
-
-class Properties(Shop):
-    """What the certificate says of a part's material, in place of the list, or for a material that is not in it.
-
-    modulus, poisson       elastic constants [MPa, -];  expansion  mean from 20 degC [1/K]
-    yield_strength         R_e or R_p0.2 [MPa];  tensile_strength  R_m [MPa], which judges a `brittle` material
-    density, specific_heat [kg/m3, J/kgK]
-    heat_cap, last_temper  highest temperature of one heating; temperature of the last temper [degC]
-    """
-
-    modulus: Pressure | None = None
-    poisson: float | None = Field(default=None, ge=0.0, lt=0.5)
-    expansion: Expansion | None = None
-    yield_strength: Pressure | None = None
-    tensile_strength: Pressure | None = None
-    brittle: bool = False
-    density: float | None = Field(default=None, gt=500.0, lt=25_000.0)
-    specific_heat: float | None = Field(default=None, gt=50.0, lt=5000.0)
-    heat_cap: Temperature | None = None
-    last_temper: Temperature | None = None
 
 
 class Part(Shop):

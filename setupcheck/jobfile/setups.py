@@ -17,10 +17,10 @@ from setupcheck.jobfile.models import (
     Place,
     Require,
     RunOut,
-    Shop,
     Waive,
     Worm,
 )
+from setupcheck.jobfile.service import JointService
 from setupcheck.jobfile.types import (
     Angle,
     AngleBound,
@@ -31,7 +31,7 @@ from setupcheck.jobfile.types import (
     Fraction,
     Length,
     Play,
-    Service,
+    Shop,
     Size,
     Temperature,
     TemperatureDifference,
@@ -312,11 +312,22 @@ class Heat(Shop):
     cold_by: Literal["freezer", "dry-ice", "liquid-nitrogen"] | None = None
 
 
+class MeasuredPair(Shop):
+    """A bore and a journal that lie on the bench, as measured, and what both readings may be out."""
+
+    name: str
+    bore: Size
+    journal: Size
+    uncertainty: Bound | None = None
+
+
 class Join(Shop):
     """Two parts put together: the machine axis of this step is the inner part's surface.
 
     grips_first  where a shrunk hub bites first: `shoulder-end` (cooled or clamped so that no gap opens) or `anywhere`
     friction     of the joint, where the shop knows better than the table;  smoothing  share of both Rz that is lost
+    serves_at    coldest and warmest in service;  lead_in  chamfer that leads a pressed part in, along the axis
+    growth_at    diameters of the hub whose growth is asked for;  pairs  measured parts to choose from
     square  `bore` (a long fit rules the lean) or `shoulder` (the faces named in `stop` do)
     mounted_at  where the outer part's mark stands on the inner part's, if it is kept
     """
@@ -336,7 +347,10 @@ class Join(Shop):
     friction: Annotated[float, Field(gt=0.0, le=1.0)] | None = None
     smoothing: Annotated[float, Field(ge=0.0, le=1.0)] | None = None
     must_carry: Carried | None = None
-    serves_at: Service | None = None
+    serves_at: JointService | None = None
+    lead_in: Size | None = None
+    growth_at: tuple[Size, ...] = ()
+    pairs: tuple[MeasuredPair, ...] = ()
 
 
 class Setup(Shop):

@@ -1,4 +1,4 @@
-"""Values of the job file in shop notation, as pydantic types. Inside: mm, rad, degC, N, N mm, s."""
+"""Values of the job file in shop notation, as pydantic types, and what all records share. Inside: mm, rad, degC, N, N mm, s."""
 
 from __future__ import annotations
 
@@ -6,7 +6,7 @@ import re
 from collections.abc import Callable
 from typing import Annotated, Any, Literal
 
-from pydantic import BeforeValidator, GetCoreSchemaHandler, ValidationError, ValidationInfo
+from pydantic import BaseModel, BeforeValidator, ConfigDict, GetCoreSchemaHandler, ValidationError, ValidationInfo
 from pydantic_core import InitErrorDetails, PydanticCustomError, core_schema
 
 from setupcheck import notation
@@ -14,6 +14,12 @@ from setupcheck.notation import Amount, NotationError
 
 Given = str | int | float
 INCH = 25.4  # mm, exactly (international yard and pound agreement, 1959)
+
+
+class Shop(BaseModel):
+    """A record of the job file: frozen, and no unknown keys."""
+
+    model_config = ConfigDict(extra="forbid", frozen=True, coerce_numbers_to_str=True, defer_build=True)
 
 
 def units_of(info: ValidationInfo) -> Literal["mm", "in"]:
@@ -32,7 +38,7 @@ def in_file_units(mm: float, info: ValidationInfo) -> str:
     return size_shown(mm, units_of(info))
 
 
-def _shown(given: object) -> str:
+def as_listed(given: object) -> str:
     """A list of plain values as it stands in the file, anything else quoted."""
     if isinstance(given, list) and all(isinstance(g, str | int | float) for g in given):
         return f"[{', '.join(notation.quoted(g).strip(chr(39)) for g in given[:4])}{', …' if len(given) > 4 else ''}]"
@@ -75,7 +81,7 @@ def _size(given: object, info: ValidationInfo) -> float:
 def _positive_size(given: object, info: ValidationInfo) -> float:
     value = notation.length(_scalar(given), units=units_of(info))
     if value <= 0.0:
-        raise ValueError(f"{_shown(given)} is not a size. Write a length above zero")
+        raise ValueError(f"{as_listed(given)} is not a size. Write a length above zero")
     return value
 
 
@@ -96,11 +102,11 @@ def _signed_error(given: object, info: ValidationInfo) -> float:
 
 def _range(given: object, info: ValidationInfo) -> tuple[float, float]:
     if not isinstance(given, list | str):
-        raise ValueError(f"{_shown(given)} is not a range. Write the smallest and the largest: [2 um, 14 um]")
+        raise ValueError(f"{as_listed(given)} is not a range. Write the smallest and the largest: [2 um, 14 um]")
     low, high = notation.length_range(given, units=units_of(info), unit_needed=True)
     if low < 0.0:
         raise ValueError(
-            f"{_shown(given)} begins below zero, and a negative clearance is an interference. "
+            f"{as_listed(given)} begins below zero, and a negative clearance is an interference. "
             "Write 0 um or more, or join the parts by press or shrink"
         )
     return low, high
@@ -112,21 +118,21 @@ def _amount(given: object, info: ValidationInfo) -> Amount:
 
 def _amounts(given: object, info: ValidationInfo) -> tuple[Amount, Amount]:
     if not isinstance(given, list) or len(given) != 2:
-        raise ValueError(f"{_shown(given)} is not a pair of limits. Write [20 um, 80 um]")
+        raise ValueError(f"{as_listed(given)} is not a pair of limits. Write [20 um, 80 um]")
     low, high = (_amount(g, info) for g in given)
     if low.dimension != high.dimension:
-        raise ValueError(f"{_shown(given)} has limits in two kinds of unit. Write both in one, as in [20 um, 80 um]")
+        raise ValueError(f"{as_listed(given)} has limits in two kinds of unit. Write both in one, as in [20 um, 80 um]")
     if low.value > high.value:
-        raise ValueError(f"{_shown(given)} runs from high to low. Write {_shown(given[::-1])}")
+        raise ValueError(f"{as_listed(given)} runs from high to low. Write {as_listed(given[::-1])}")
     return low, high
 
 
 def _service(given: object, info: ValidationInfo) -> tuple[float, float]:
     if not isinstance(given, list) or len(given) != 2:
-        raise ValueError(f"{_shown(given)} is not a span of temperatures. Write [5 degC, 45 degC]")
+        raise ValueError(f"{as_listed(given)} is not a span of temperatures. Write [5 degC, 45 degC]")
     low, high = (notation.temperature(_scalar(g)) for g in given)
     if low > high:
-        raise ValueError(f"{_shown(given)} runs from warm to cold. Write the colder one first")
+        raise ValueError(f"{as_listed(given)} runs from warm to cold. Write the colder one first")
     return low, high
 
 
@@ -226,6 +232,8 @@ Pressure = Annotated[float, _plain(notation.pressure)]
 """A stress or modulus [MPa]; the unit must be written."""
 Expansion = Annotated[float, _plain(notation.expansion)]
 """A thermal expansion [1/K]; the unit must be written."""
+Conductivity = Annotated[float, _plain(notation.conductivity)]
+"""A heat conductivity [W/mK]; the unit must be written."""
 Roughness = Annotated[notation.Roughness, _plain(notation.roughness)]
 """A roughness with its figure, Ra or Rz."""
 Duration = Annotated[float, _plain(notation.duration)]

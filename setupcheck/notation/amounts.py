@@ -20,6 +20,7 @@ from setupcheck.notation.figures import (
 )
 from setupcheck.notation.lengths import FILE_UNITS, Units, bound, length, without_plus_minus
 from setupcheck.notation.units import (
+    CONDUCTIVITY,
     DURATION,
     EXPANSION,
     FORCE,
@@ -52,7 +53,7 @@ NUMBER_ALONE = Kind("number", "a number", {}, "a number without unit", "72")
 
 Dimension = Literal[
     "length", "angle", "torque", "force", "fraction", "temperature", "temperature_difference", "pressure", "duration",
-    "mass", "speed", "expansion", "number",
+    "mass", "speed", "expansion", "conductivity", "number",
 ]  # fmt: skip
 
 
@@ -155,6 +156,18 @@ def expansion(given: Given, *, at_least: float | None = 0.0) -> float:
     1.2e-05
     """
     return _in_base(given, EXPANSION, at_least)
+
+
+def conductivity(given: Given) -> float:
+    """A heat conductivity, above 0: `52 W/mK`, `30 Btu/h/ft/degF`. Returns W/mK.
+
+    >>> conductivity("52 W/mK"), round(conductivity("30 Btu/h/ft/degF"), 1)
+    (52.0, 51.9)
+    """
+    value = _in_base(given, CONDUCTIVITY, 0.0)
+    if value == 0.0:
+        raise NotationError(f"{quoted(given)} lets no heat through", "Write what the data sheet says, as in 52 W/mK")
+    return value
 
 
 def duration(given: Given, *, at_least: float | None = 0.0) -> float:

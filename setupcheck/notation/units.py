@@ -165,6 +165,22 @@ EXPANSION = Kind(
     "um/m/K",
     "11.5 um/m/K",
 )
+_PER_FOOT: Ratio = (105505585262 * 9 * 10_000, 10**8 * 5 * 3600 * 3048)  # Btu (international table) per h, ft and degF
+CONDUCTIVITY = Kind(
+    "conductivity",
+    "a heat conductivity",
+    {
+        "W/mK": (1, 1), "W/m*K": (1, 1), "W/(m*K)": (1, 1), "W/(mK)": (1, 1), "W/m/K": (1, 1), "W/m/degC": (1, 1),
+        "Btu/h/ft/degF": _PER_FOOT, "Btu/(h*ft*degF)": _PER_FOOT,
+    },
+    "W/mK",
+    "52 W/mK",
+    {
+        "W/m": "The kelvin is missing: write W/mK",
+        "%IACS": "Electrical conductivity stands in the place of that of heat: write W/mK",
+        "MS/m": "Electrical conductivity stands in the place of that of heat: write W/mK",
+    },
+)  # fmt: skip
 FRACTION = Kind("fraction", "a share", {"%": (1, 100), "percent": (1, 100)}, "%", "95 %")
 MASS = Kind(
     "mass",
@@ -191,7 +207,7 @@ SPEED = Kind(
 )  # fmt: skip
 
 # In the order in which a unit of unknown kind is looked up: the " is seconds of arc before it is inches.
-KINDS = (ANGLE, LENGTH, TEMPERATURE, TORQUE, FORCE, PRESSURE, DURATION, FRACTION, MASS, SPEED, EXPANSION)
+KINDS = (ANGLE, LENGTH, TEMPERATURE, TORQUE, FORCE, PRESSURE, DURATION, FRACTION, MASS, SPEED, EXPANSION, CONDUCTIVITY)
 
 _JOIN = re.compile(r"\s*\*\s*|\s+")
 

@@ -25,6 +25,8 @@ GRAVITY = 9.81
 KELVIN = 273.15
 AIR_CONDUCTIVITY = 0.03
 """Of warm air in the gap [W/mK], about 80 degC. Source: tables of air, from memory."""
+LUMPED_BELOW = 0.1
+"""Biot number below which a body has one temperature throughout, to some 5 %. Source: textbooks of heat transfer."""
 _STEPS = 400  # of the time integration; the tests compare with scipy and published times
 
 
@@ -65,6 +67,11 @@ class Ring:
         """Outside, bore and both faces [m2]: the bore is open while the ring is carried."""
         faces = math.pi / 2.0 * (self.outside**2 - self.bore**2)
         return (math.pi * (self.outside + self.bore) * self.length + faces) * 1e-6
+
+    @property
+    def depth(self) -> float:
+        """Volume over surface [mm]: how far from the surface its heat lies, on the whole."""
+        return self.heat_capacity / (self.density * self.specific_heat * self.surface) * 1e3
 
 
 def interference_at(
@@ -205,6 +212,22 @@ def shoulder_gap(interference: float, *, diameter: float, grip_distance: float) 
     return max(interference, 0.0) * grip_distance / diameter
 
 
+def biot_number(film: float, *, depth: float, conductivity: float) -> float:
+    """How hard heat gets to the surface of a body against how hard it gets away from there [1].
+
+    Bi = h (V/A) / k;  film: h [W/m2K], radiation counted in;  depth: V/A [mm];  conductivity: k [W/mK]
+    Below LUMPED_BELOW the body is of one temperature, and `cooled_temperature` holds.
+    Raises: ValueError for a film below 0, a depth or conductivity not above 0.
+    Source: lumped capacity criterion, textbooks; a published example in tests/published.
+
+    >>> round(biot_number(15.0, depth=8.6, conductivity=52.0), 4)
+    0.0025
+    """
+    if film < 0.0 or not (depth > 0.0 and conductivity > 0.0):
+        raise ValueError("the film must not be below 0, depth and conductivity must be above 0")
+    return film * depth * 1e-3 / conductivity
+
+
 def film_coefficient(*, surface: float, air: float, diameter: float) -> float:
     """Heat transfer of a horizontal cylinder in still air [W/m2K], temperatures in degC, diameter in mm.
 
@@ -247,7 +270,7 @@ def cooled_temperature(ring: Ring, *, start: float, seconds: float, air: float, 
     """Temperature of a ring after some time in the air [degC]; start - this is the loss in the carry.
 
     m c dT/dt = -q(T), Runge-Kutta of fourth order.
-    Validity: one temperature in the whole ring (Biot number under 0.1, always so for metal rings in air), still air, no
+    Validity: one temperature in the whole ring (`biot_number` below LUMPED_BELOW, as metal rings in air have it), still air, no
     contact: tongs, bench and the cold shaft take far more than the air.
     Raises: ValueError for a time below 0.  Source: lumped capacity (textbook); published times in tests/published.
 

@@ -5,6 +5,8 @@ A property that scatters is kept as low and high. A question takes the end that 
 
 from __future__ import annotations
 
+from collections.abc import Mapping
+from types import MappingProxyType
 from typing import Literal
 
 from setupcheck.physics.heating import REFERENCE_TEMPERATURE
@@ -12,7 +14,21 @@ from setupcheck.record import record
 
 EVIDENCE = ("standard", "published", "shop record", "common practice", "screening choice", "from memory")
 """How good a number is, best first."""
-FAMILIES = ("copper-alloy", "steel", "cast-iron", "aluminium")
+CLASSES: Mapping[str, str] = MappingProxyType({
+    "tin-bronze": "copper-alloy",
+    "aluminium-bronze": "copper-alloy",
+    "brass": "copper-alloy",
+    "copper": "copper-alloy",
+    "copper-nickel": "copper-alloy",
+    "steel": "steel",
+    "austenitic-stainless": "steel",
+    "martensitic-stainless": "steel",
+    "grey-iron": "cast-iron",
+    "ductile-iron": "cast-iron",
+    "aluminium-alloy": "aluminium",
+})  # fmt: skip
+"""Class of a material -> its family. `steel` is carbon and alloy steel; what a class usually has: rules/data/classes.yaml."""
+FAMILIES = tuple(dict.fromkeys(CLASSES.values()))
 
 LEAD_COUNTS = 0.1
 """Percent of lead from which dust and fume cautions apply. Our screening choice."""
@@ -70,17 +86,20 @@ class Material:
     """One material as the shop names it. None: the condition decides, the job has to say.
 
     also              other names it is found by
+    of_class, family  one of CLASSES and its family; "" and by its name where the job states all of it
     modulus           E [MPa], low and high
     heating, cooling  mean expansion from 20 degC up to about 200, and from 20 degC down to as low as -196 [1/K]
     yield_strength    R_e or R_p0.2, least of the usual makings [MPa]; None for a brittle material
     tensile_strength  R_m, least [MPa]
     density           [kg/m3];  specific_heat [J/kgK]
+    conductivity      of heat [W/mK]; None where the job states all of a material but this
     heat_cap          highest temperature of one heating for a fit [degC]
     lead, zinc, beryllium   largest content the specification allows [percent]
     """
 
     name: str
     also: tuple[str, ...]
+    of_class: str
     family: str
     brittle: bool
     note: str
@@ -92,6 +111,7 @@ class Material:
     tensile_strength: Value | None
     density: Value
     specific_heat: Value
+    conductivity: Value | None
     heat_cap: Value
     lead: Value
     zinc: Value

@@ -20,7 +20,7 @@ from setupcheck.ledger.figures import OverATurn
 from setupcheck.ledger.route import State
 from setupcheck.notation import NotationError, length
 from setupcheck.physics.materials import Range
-from setupcheck.quantities import pairing, strength
+from setupcheck.quantities import growing, pairing, strength
 from setupcheck.quantities.book import Open, OutOfRange
 from setupcheck.quantities.causes import Entry, length_error, size_error
 from setupcheck.quantities.cutter_shape import insert_width, tilt_of
@@ -233,7 +233,7 @@ def _growth(floor: Floor, found: Drive) -> Account | Open:
         join = setup.join
         if join is None or floor.loaded.ref(join.outer).part != found.wheel.part or join.by not in pairing.FITTED:
             continue
-        if not strength.teeth_before(floor, found.wheel.part, setup.op, surface=found.wheel.surface):
+        if not growing.teeth_before(floor, found.wheel.part, setup.op, surface=found.wheel.surface):
             continue
         grown = growth(floor, join, setup.op)
         if isinstance(grown, Open):
@@ -256,15 +256,15 @@ def growth(floor: Floor, join: Join, op: int) -> Span | Open:
     if not isinstance(limits, JointSizes):
         return limits if limits is not None else Span(0.0, 0.0)
     joint, served = pairing.pair(floor, join, limits), pairing.service(join, op)
-    lost = pairing.smoothing(floor, join, joint) if isinstance(joint, pairing.Pair) else None
+    lost = pairing.smoothed(floor, join, joint) if isinstance(joint, pairing.Pair) else None
     opened = [x for x in (joint, served, lost) if isinstance(x, Open)]
     if opened:
         return _merged(opened)
     if not isinstance(joint, pairing.Pair) or not isinstance(lost, float) or isinstance(served, Open):
         return Span(0.0, 0.0)
     try:
-        most = strength.growth_most(joint, strength.grip_most(joint, interference_most(limits), served))
-        least = strength.growth_least(joint, strength.grip_least(joint, interference_least(limits), lost, served))
+        most = growing.growth_most(joint, strength.grip_most(joint, interference_most(limits), served))
+        least = growing.growth_least(joint, strength.grip_least(joint, interference_least(limits), lost, served))
     except OutOfRange as why:
         return Open(because=str(why))
     return Span(least or 0.0, most or 0.0)
@@ -284,8 +284,7 @@ def _served(floor: Floor, found: Drive) -> Served | Open:
     assert mesh is not None and worm is not None
     served = mesh.serves_at
     if served is None:
-        joins = [s.join for s in floor.loaded.job.setups if s.join is not None and s.join.serves_at is not None]
-        served = joins[-1].serves_at if joins else None
+        served = _of_the_last_joint(floor)
     missing: tuple[str, ...] = () if served is not None else ("mesh.serves_at",)
     missing += () if mesh.housing is not None else ("mesh.housing",)
     missing += () if worm.material is not None else ("worm.material",)
@@ -308,6 +307,13 @@ def _served(floor: Floor, found: Drive) -> Served | Open:
     path = "mesh.serves_at" if mesh.serves_at is not None else "mesh"
     name = "drive, its temperature in service"
     return Served(_spanned(moved, name, path), _spanned(strains, f"{name}: pitch", path))
+
+
+def _of_the_last_joint(floor: Floor) -> tuple[float, float] | None:
+    """Coldest and warmest that hub or shaft of the last joint get, where the drive itself says nothing [degC]."""
+    joins = [s.join.serves_at for s in floor.loaded.job.setups if s.join is not None and s.join.serves_at is not None]
+    each = [t for state in joins[-1] for t in (state.hub, state.shaft)] if joins else []
+    return (min(each), max(each)) if each else None
 
 
 def _spanned(values: list[float], name: str, path: str) -> Account:

@@ -50,9 +50,12 @@ def ring_of(pair: Pair) -> Ring:
         raise OutOfRange(str(why)) from None
 
 
-def carry_loss(floor: Floor, join: Join, pair: Pair, planned: float, op: int) -> float | Open | None:
+def carry_loss(
+    floor: Floor, join: Join, pair: Pair, planned: float, op: int, biot: float | None = None
+) -> float | Open | None:
     """Heat lost between oven and shaft, in still air [K]: the hub's capacity against convection and radiation.
 
+    `biot` is asked for so that a hub which is not of one temperature throughout has no such loss.
     A draught, tongs and a cold bench take more.  Source: physics.heating (Churchill and Chu, Stefan-Boltzmann).
     """
     if join.by != "shrink":
@@ -146,7 +149,7 @@ HEAT = (
         "K",
         1,
         carry_loss,
-        {**_HERE, **_PAIR, "planned": "heat.planned_low", "op": "@op"},
+        {**_HERE, **_PAIR, "planned": "heat.planned_low", "op": "@op", "biot": "heat.biot"},
         "heat lost on the way to the shaft",
     ),
     Quantity(

@@ -43,8 +43,7 @@ def sections(floor: Floor, join: Join) -> tuple[Section, ...] | Open | None:
         or (bore.kind, journal.kind) != ("bore", "cylinder")
     ):
         return None
-    (low, high), (from_, to) = _span(floor, outer.part, bore), _span(floor, inner.part, journal)
-    low, high = max(low, from_), min(high, to)
+    low, high = _overlap(floor, (outer.part, bore), (inner.part, journal))
     if high <= low:
         return Open((f"parts.{inner.part}.surfaces.{inner.surface}",), "bore and journal do not meet")
     outsides = list(_outsides(floor, outer.part))
@@ -60,6 +59,26 @@ def sections(floor: Floor, join: Join) -> tuple[Section, ...] | Open | None:
     if filled is None:
         return Open((f"parts.{outer.part}.surfaces",), f"no outside surface of {outer.part} stands over the joint")
     return filled
+
+
+def over_the_joint(floor: Floor, join: Join, ref: Ref) -> bool:
+    """Whether a round surface of either part stands anywhere over the length that bore and journal share.
+
+    Source: the drawing.
+    """
+    outer, inner = floor.loaded.ref(join.outer), floor.loaded.ref(join.inner)
+    bore, journal, node = (_node(floor, r) for r in (outer, inner, ref))
+    if not isinstance(bore, Round) or not isinstance(journal, Round) or not isinstance(node, Round):
+        return False
+    low, high = _overlap(floor, (outer.part, bore), (inner.part, journal))
+    from_, to = _span(floor, ref.part, node)
+    return from_ < high and to > low
+
+
+def _overlap(floor: Floor, *both: tuple[str, Round]) -> tuple[float, float]:
+    """Ends of the stretch that both surfaces share [mm]; the second below the first where they do not meet."""
+    spans = [_span(floor, part, node) for part, node in both]
+    return max(low for low, _ in spans), min(high for _, high in spans)
 
 
 @record

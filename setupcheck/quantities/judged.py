@@ -2,7 +2,9 @@
 
 from __future__ import annotations
 
-from setupcheck.ledger.combine import Combined, Draws, combine
+from dataclasses import replace
+
+from setupcheck.ledger.combine import Combined, Draws, Ends, combine
 from setupcheck.ledger.figures import Figure
 from setupcheck.quantities.book import Known, Open
 from setupcheck.quantities.relations import Built
@@ -86,7 +88,13 @@ def combined(built: Built, stack: Stack, floor: Floor, draws: Draws) -> Result:
     """
     job = floor.loaded.job
     found = combine(built.figure, draws, low=stack.low, high=stack.high, confidence=job.confidence)
-    return Result(stack, found, built.figure)
+    return Result(stack, _not_negative(found) if stack.require.what == "torque" else found, built.figure)
+
+
+def _not_negative(found: Combined) -> Combined:
+    """A joint with play holds nothing, and not less than that, though its figure is straight in the interference."""
+    worst, rss, likely = (Ends(max(e.low, 0.0), max(e.high, 0.0)) for e in (found.worst, found.rss, found.likely))
+    return replace(found, worst=worst, rss=rss, likely=likely)
 
 
 def worst(result: Result) -> float | None:

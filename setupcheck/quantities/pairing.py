@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from setupcheck.jobfile.models import Part, Round
+from setupcheck.jobfile.service import Warmth
 from setupcheck.jobfile.setups import Join
 from setupcheck.notation import Roughness
 from setupcheck.physics import interference as fits
@@ -14,11 +15,13 @@ from setupcheck.quantities.friction import Friction, friction
 from setupcheck.quantities.joining import JointSizes
 from setupcheck.quantities.joint_shape import Section, sections
 from setupcheck.quantities.shop import Floor
-from setupcheck.quantities.stuff import material_of
+from setupcheck.quantities.stuff import material_of, porous
 from setupcheck.record import record
 
 FITTED = ("shrink", "press")
 """Ways of joining that hold by interference."""
+BENCH = Warmth(20.0, 20.0)
+"""The temperature of all sizes. Source: ISO 1."""
 RZ_PER_RA = 7.0
 """Rz over Ra where only Ra is stated. Source: 4 to 7 for machined surfaces (from memory); the end that loses more."""
 
@@ -52,15 +55,15 @@ class Pair:
         except ValueError as why:
             raise OutOfRange(str(why)) from None
 
-    def at(self, interference: float, question: Question, temperature: float) -> float:
-        """Interference at a temperature of the whole joint, expansions safe for the question [mm]."""
+    def at(self, interference: float, question: Question, state: Warmth) -> float:
+        """Interference when hub and shaft have their temperatures, expansions safe for the question [mm]."""
         return interference_at(
             interference,
             diameter=self.diameter,
-            hub_expansion=expansion_for(question, "hub", self.hub, temperature=temperature).value,
-            hub_temperature=temperature,
-            shaft_expansion=expansion_for(question, "shaft", self.shaft, temperature=temperature).value,
-            shaft_temperature=temperature,
+            hub_expansion=expansion_for(question, "hub", self.hub, temperature=state.hub).value,
+            hub_temperature=state.hub,
+            shaft_expansion=expansion_for(question, "shaft", self.shaft, temperature=state.shaft).value,
+            shaft_temperature=state.shaft,
         )
 
 
@@ -72,6 +75,8 @@ def pair(floor: Floor, join: Join, sizes: JointSizes) -> Pair | Open | None:
     if shape is None:
         return None
     outer, inner = floor.loaded.ref(join.outer).part, floor.loaded.ref(join.inner).part
+    if any(porous(floor.loaded.job.parts[name]) for name in (outer, inner)):
+        return Open(because="sintered metal crushes into its pores, so no elastic figure holds for this joint")
     hub, shaft = material_of(floor, outer), material_of(floor, inner)
     opened = [x for x in (shape, hub, shaft) if isinstance(x, Open)]
     if isinstance(shape, Open) or isinstance(hub, Open) or isinstance(shaft, Open):
@@ -79,10 +84,34 @@ def pair(floor: Floor, join: Join, sizes: JointSizes) -> Pair | Open | None:
     return Pair(hub, shaft, outer, inner, sizes.nominal, shape)
 
 
-def smoothing(floor: Floor, join: Join, pair: Pair) -> float | Open:
+def smoothing(join: Join, peaks: float) -> float:
     """Interference lost where the peaks of both surfaces flatten, on diameter [mm]: 0.8 (Rz hub + Rz shaft).
 
     Source: DIN 7190 (from memory); the factor is not settled, `smoothing` in the join changes it.
+    """
+    return (join.smoothing if join.smoothing is not None else fits.SMOOTHING_FACTOR) * peaks
+
+
+def smoothing_1988(peaks: float) -> float:
+    """Interference lost by the older published factor, on diameter [mm]: 0.8 (Rz hub + Rz shaft).
+
+    Source: DIN 7190:1988 and 2001 (from memory).
+    """
+    return fits.smoothing_loss(hub_roughness=peaks, shaft_roughness=0.0, factor=fits.SMOOTHING_FACTOR)
+
+
+def smoothing_2017(peaks: float) -> float:
+    """Interference lost by the factor said of the newer edition, on diameter [mm]: 0.4 (Rz hub + Rz shaft).
+
+    Source: a secondary text on DIN 7190:2017, not checked.
+    """
+    return fits.smoothing_loss(hub_roughness=peaks, shaft_roughness=0.0, factor=fits.LOWER_SMOOTHING_FACTOR)
+
+
+def peaks(floor: Floor, join: Join, pair: Pair) -> float | Open:
+    """Rz of bore and journal together [mm]; an Ra counts as seven times as high.
+
+    Source: the job file; Rz over Ra from memory.
     """
     heights, missing = [], []
     for text in (join.outer, join.inner):
@@ -95,16 +124,21 @@ def smoothing(floor: Floor, join: Join, pair: Pair) -> float | Open:
             heights.append(_rz(given))
     if missing:
         return Open(tuple(missing))
-    factor = join.smoothing if join.smoothing is not None else fits.SMOOTHING_FACTOR
-    return fits.smoothing_loss(hub_roughness=heights[0], shaft_roughness=heights[1], factor=factor)
+    return heights[0] + heights[1]
+
+
+def smoothed(floor: Floor, join: Join, pair: Pair) -> float | Open:
+    """What `smoothing` takes, straight from the job [mm]. Source: as there."""
+    found = peaks(floor, join, pair)
+    return found if isinstance(found, Open) else smoothing(join, found)
 
 
 def _rz(given: Roughness) -> float:
     return given.height * (RZ_PER_RA if given.kind == "Ra" else 1.0)
 
 
-def service(join: Join, op: int) -> tuple[float, float] | Open:
-    """Coldest and warmest temperature the joint works at [degC]. Source: the job file."""
+def service(join: Join, op: int) -> tuple[Warmth, Warmth] | Open:
+    """Coldest and warmest state the joint works in, hub and shaft [degC]. Source: the job file."""
     return join.serves_at if join.serves_at is not None else Open((f"setups.{op}.join.serves_at",))
 
 

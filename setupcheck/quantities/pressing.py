@@ -17,14 +17,27 @@ IN_HAND = 1.5
 
 def press_force(pair: Pair, most: float, rubbing: Friction, join: Join) -> float | None:
     """Force at the end of pressing in [N], tightest pair, highest friction; None for a shrink fit. Source: Coulomb, Lamé."""
-    if join.by != "press":
-        return None
+    return press_off_force(pair, most, rubbing) if join.by == "press" else None
+
+
+def press_off_force(pair: Pair, most: float, rubbing: Friction) -> float:
+    """Force that starts to press or pull the tightest pair off again, cold [N]: highest friction, nothing smoothed.
+
+    Both parts warmed alike loosen a hub that outgrows its shaft; the loosest pair needs far less.  Source: Coulomb, Lamé.
+    """
     return math.fsum(
         fits.press_force(
             fits.joint_pressure(j, interference=most), friction=rubbing.high, diameter=pair.diameter, length=s.length
         )
         for j, s in zip(pair.joints("strength"), pair.sections, strict=True)
     )
+
+
+def lead_in(join: Join, op: int) -> float | Open | None:
+    """Length of the chamfer that leads a pressed part in [mm]; None for a joint that is not pressed. Source: the job file."""
+    if join.by != "press":
+        return None
+    return join.lead_in if join.lead_in is not None else Open((f"setups.{op}.join.lead_in",))
 
 
 def press_allowed(floor: Floor, join: Join, op: int) -> float | Open | None:
@@ -47,6 +60,18 @@ _HERE = {"floor": "route.floor", "join": ":"}
 _PAIR = {"pair": "fit.pair"}
 
 PRESSING = (
+    Quantity(
+        "fit.press_off",
+        "join",
+        "N",
+        0,
+        press_off_force,
+        {**_PAIR, "most": "fit.interference_most", "rubbing": "fit.rubbing"},
+        "force to press or pull the tightest pair off, cold",
+    ),
+    Quantity(
+        "fit.lead_in", "join", "mm", 1, lead_in, {"join": ":", "op": "@op"}, "chamfer that leads a pressed part in"
+    ),
     Quantity(
         "fit.press_force",
         "join",

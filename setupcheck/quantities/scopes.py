@@ -37,7 +37,7 @@ class CutEntry:
 
 
 def scopes(floor: Floor) -> list[Scope]:
-    """All scopes: the job, its place, setups with their hold entries and cuts, joinings, measured values, stacks."""
+    """All scopes: the job, its place, its parts, setups with their hold entries and cuts, joinings, measured values, stacks."""
     loaded, job = floor.loaded, floor.loaded.job
     whole = Scope("job", "", floor, "", line=1)
     found = [whole]
@@ -45,6 +45,8 @@ def scopes(floor: Floor) -> list[Scope]:
         found.append(Scope("place", "", job.place, "place", line=loaded.line("place"), within=(whole,)))
     if job.mesh is not None:
         found.append(Scope("mesh", "", job.mesh, "mesh", line=loaded.line("mesh"), within=(whole,)))
+    for name, part in job.parts.items():
+        found.append(Scope("part", name, part, f"parts.{name}", line=loaded.line(f"parts.{name}"), within=(whole,)))
     for setup in job.setups:
         found += _setup_scopes(floor, setup, whole)
     for read in readings(job):

@@ -35,14 +35,14 @@ def torque(floor: Floor, stack: Stack) -> Built | Open:
         return Open(because=f"the joint of op {op} does not hold by interference")
     if isinstance(pair, Open):
         return pair
-    parts = (pairing.smoothing(floor, join, pair), pairing.rubbing(floor, join, pair, op), pairing.service(join, op))
+    parts = (pairing.smoothed(floor, join, pair), pairing.rubbing(floor, join, pair, op), pairing.service(join, op))
     lost, rubbing, served = parts
     opened = [x for x in parts if isinstance(x, Open)]
     if opened or not isinstance(lost, float) or not isinstance(rubbing, Friction) or not isinstance(served, tuple):
         return Open(tuple(m for x in opened for m in x.missing), "; ".join(x.because for x in opened if x.because))
     try:
         unit = strength.torque_held(pair, strength.force_held(pair, 1.0, rubbing.low))
-        taken = min(pair.at(0.0, "holding", t) for t in (*served, strength.REFERENCE))
+        taken = min(pair.at(0.0, "holding", t) for t in (*served, pairing.BENCH))
     except OutOfRange as why:
         return Open(because=str(why))
     bore, journal = (_size(floor, floor.loaded.ref(text)) for text in (join.outer, join.inner))

@@ -4,15 +4,26 @@ from __future__ import annotations
 
 import math
 
-from setupcheck.jobfile.names import Ref
+from setupcheck.jobfile.service import Warmth
 from setupcheck.jobfile.setups import Join
 from setupcheck.notation import show
 from setupcheck.physics import interference as fits
+from setupcheck.physics.criteria import Criterion, elastic_interference
 from setupcheck.physics.heating import holding_temperature, loosening_temperature
-from setupcheck.physics.materials import COLD, Question, expansion_for
+from setupcheck.physics.materials import COLD, expansion_for
 from setupcheck.quantities.book import Open, OutOfRange, Quantity
 from setupcheck.quantities.friction import Friction
-from setupcheck.quantities.pairing import Pair, pair, rubbing, service, smoothing
+from setupcheck.quantities.pairing import (
+    BENCH,
+    Pair,
+    pair,
+    peaks,
+    rubbing,
+    service,
+    smoothing,
+    smoothing_1988,
+    smoothing_2017,
+)
 from setupcheck.quantities.shop import Floor
 from setupcheck.quantities.stuff import strength_of
 
@@ -25,20 +36,20 @@ ON_BREAKING = 3.0
 REFERENCE = 20.0  # degC of all sizes, ISO 1
 
 
-def grip_least(pair: Pair, least: float, smoothing: float, service: tuple[float, float]) -> float:
-    """Least interference in service [mm]: loosest pair, smoothed, at the temperature that takes most of it.
+def grip_least(pair: Pair, least: float, smoothing: float, service: tuple[Warmth, Warmth]) -> float:
+    """Least interference in service [mm]: loosest pair, smoothed, in the state that takes most of it, 20 degC among them.
 
-    U = U_min - smoothing + D [alpha_I (T - 20) - alpha_A (T - 20)], hub expansion high, shaft low.  Source: physics.heating.
+    U = U_min - smoothing + D [alpha_I (T_I - 20) - alpha_A (T_A - 20)], hub expansion high, shaft low.  Source: physics.heating.
     """
-    return min(pair.at(least - smoothing, "holding", t) for t in (*service, REFERENCE))
+    return min(pair.at(least - smoothing, "holding", state) for state in (*service, BENCH))
 
 
-def grip_most(pair: Pair, most: float, service: tuple[float, float]) -> float:
+def grip_most(pair: Pair, most: float, service: tuple[Warmth, Warmth]) -> float:
     """Largest interference in service or on the bench [mm]: tightest pair, nothing smoothed, at its worst temperature.
 
     Source: physics.heating.
     """
-    return max(pair.at(most, "strength", t) for t in (*service, REFERENCE))
+    return max(pair.at(most, "strength", state) for state in (*service, BENCH))
 
 
 def limit_of(floor: Floor, pair: Pair) -> tuple[float, str] | Open:
@@ -129,6 +140,43 @@ def torque_held(pair: Pair, force: float) -> float:
     return force * pair.diameter / 2.0
 
 
+def torque_smoothed(
+    pair: Pair, least: float, smoothing: float, service: tuple[Warmth, Warmth], friction: float
+) -> float:
+    """Torque of the loosest joint in service, smoothed by one of the two published factors [N mm]. Source: as `torque_held`."""
+    return torque_held(pair, force_held(pair, grip_least(pair, least, smoothing, service), friction))
+
+
+def slip_safety(held: float, asked: float) -> float | None:
+    """What the loosest joint holds in service, the slip factor put back, over what it must carry; None for no load.
+
+    Source: DIN 7190 asks 1.2 to 1.5 (from memory).
+    """
+    return held * SLIP_FACTOR / asked if asked > 0.0 else None
+
+
+def elastic_by(floor: Floor, pair: Pair, criterion: Criterion) -> float | Open | None:
+    """Interference at which the weaker part yields by another criterion than the judged one [mm]; None for a brittle hub."""
+    if pair.hub.brittle:
+        return None
+    hub, shaft = strength_of(floor, pair.hub_part, pair.hub), strength_of(floor, pair.shaft_part, pair.shaft)
+    if isinstance(hub, Open) or isinstance(shaft, Open):
+        return Open(tuple(m for x in (hub, shaft) if isinstance(x, Open) for m in x.missing))
+    return min(
+        elastic_interference(j, hub_yield=hub, shaft_yield=shaft, criterion=criterion) for j in pair.joints("strength")
+    )
+
+
+def elastic_mises(floor: Floor, pair: Pair) -> float | Open | None:
+    """Interference up to which all is elastic by von Mises [mm]; shown beside the judged one. Source: physics.criteria."""
+    return elastic_by(floor, pair, "von Mises")
+
+
+def elastic_tresca(floor: Floor, pair: Pair) -> float | Open | None:
+    """Interference up to which all is elastic by Tresca [mm]; shown beside the judged one. Source: physics.criteria."""
+    return elastic_by(floor, pair, "Tresca")
+
+
 def force_asked(join: Join, pair: Pair) -> float | None:
     """Force at the seat that the joint must carry [N]: sqrt(F^2 + (2 T/D)^2); None where nothing is stated.
 
@@ -169,7 +217,7 @@ def yields_below(pair: Pair, most: float, limit: tuple[float, str]) -> float | N
     T = 20 - (U_elastic - U_max)/(D (alpha_A - alpha_I)), expansions as for strength in mild cold; None where it does so at
     20 degC already, or in no cold down to COLD.  Source: physics.heating.
     """
-    per_kelvin = pair.at(0.0, "strength", REFERENCE - 1.0)  # what a kelvin of cold adds
+    per_kelvin = pair.at(0.0, "strength", Warmth(REFERENCE - 1.0, REFERENCE - 1.0))  # what a kelvin of cold adds
     if limit[0] <= most or per_kelvin <= 0.0:
         return None
     at = REFERENCE - (limit[0] - most) / per_kelvin
@@ -192,70 +240,14 @@ def _finite(temperature: float) -> float:
     raise OutOfRange("the loosest pair does not hold even at 20 degC")
 
 
-def growth_most(pair: Pair, grip: float) -> float | None:
-    """Largest growth of the hub on its tooth circle, on diameter [mm]; None where it bears no teeth cut before the joint.
-
-    Source: Lamé's displacement at the root circle, which the teeth ride on.
-    """
-    return _growth(pair, grip, largest=True)
-
-
-def growth_least(pair: Pair, grip: float) -> float | None:
-    """Least growth of the hub on its tooth circle, on diameter [mm]; None as above. Source: Lamé's displacement."""
-    return _growth(pair, max(grip, 0.0), largest=False)
-
-
-def _growth(pair: Pair, grip: float, *, largest: bool) -> float | None:
-    question: Question = "growth" if largest else "closing"  # least: the hub stiff, the shaft soft
-    grown = [
-        fits.hub_growth(j, pressure=fits.joint_pressure(j, interference=grip), at_diameter=s.outside)
-        for j, s in zip(pair.joints(question), pair.sections, strict=True)
-        if s.toothed
-    ]
-    return (max if largest else min)(grown, default=None)
-
-
-def hole_closing(pair: Pair, grip: float) -> float | None:
-    """How much the shaft's hole closes on diameter at the largest interference [mm]; None for a solid one. Source: Lamé."""
-    closed = [fits.hole_closing(j, pressure=fits.joint_pressure(j, interference=grip)) for j in pair.joints("closing")]
-    return max((c for c in closed if c is not None), default=None)
-
-
 def length_ratio(pair: Pair) -> float:
     """Length of the joint over its diameter. Source: the drawing."""
     return math.fsum(s.length for s in pair.sections) / pair.diameter
 
 
-def growth_uncounted(floor: Floor, growth: float, join: Join, op: int) -> float | None:
-    """Growth of finished teeth that no backlash requirement counts, on diameter [mm]; None where the teeth are cut later.
-
-    Source: order of the route.
-    """
-    asked = any(r.what == "backlash" for r in floor.loaded.job.require)
-    part = floor.loaded.ref(join.outer).part
-    return None if not teeth_before(floor, part, op) else 0.0 if asked else growth
-
-
-def teeth_before(floor: Floor, part: str, op: int, *, surface: str | None = None) -> bool:
-    """Whether teeth of a part (all of them, or one surface) are finished when operation `op` joins it.
-
-    Teeth that no setup cuts are finished if the part has them as bought; teeth that are cut again afterwards are not.
-    """
-    last: dict[str, int] = {}
-    for setup in floor.loaded.job.setups:
-        for key in setup.cut:
-            ref = floor.loaded.ref(key, setup.part)
-            if ref.part == part:
-                last[ref.surface] = setup.op
-    return any(
-        last[name] < op if name in last else floor.now(Ref(part, name)) is not None
-        for name, node in floor.loaded.job.parts[part].surfaces.items()
-        if node.kind == "teeth" and surface in (None, name)
-    )
-
-
 _HERE = {"floor": "route.floor", "join": ":"}
 _PAIR = {"pair": "fit.pair"}
+_PEAKS = {"peaks": "fit.peaks"}
 _LOOSE = {"least": "fit.interference_least", "smoothing": "fit.smoothing"}
 
 STRENGTH = (
@@ -264,7 +256,16 @@ STRENGTH = (
     Quantity(
         "fit.rubs", "join", "", 0, friction_in_words, {"rubbing": "fit.rubbing"}, "friction and where it comes from"
     ),
-    Quantity("fit.smoothing", "join", "um", 1, smoothing, {**_HERE, **_PAIR}, "interference lost to flattened peaks"),
+    Quantity("fit.peaks", "join", "um", 1, peaks, {**_HERE, **_PAIR}, "roughness of both surfaces, Rz together"),
+    Quantity(
+        "fit.smoothing", "join", "um", 1, smoothing, {"join": ":", **_PEAKS}, "interference lost to flattened peaks"
+    ),
+    Quantity(
+        "fit.smoothing_1988", "join", "um", 1, smoothing_1988, _PEAKS, "interference lost by the older factor, 0.8"
+    ),
+    Quantity(
+        "fit.smoothing_2017", "join", "um", 1, smoothing_2017, _PEAKS, "interference lost by the lower factor, 0.4"
+    ),
     Quantity("fit.service", "join", "", 0, service, {"join": ":", "op": "@op"}, "coldest and warmest in service"),
     Quantity(
         "fit.grip_least",
@@ -295,6 +296,24 @@ STRENGTH = (
     ),
     Quantity(
         "fit.elastic", "join", "um", 1, elastic, {"limit": "fit.limit"}, "interference up to which all is elastic"
+    ),
+    Quantity(
+        "fit.elastic_mises",
+        "join",
+        "um",
+        1,
+        elastic_mises,
+        {"floor": "route.floor", **_PAIR},
+        "interference up to which all is elastic by von Mises, not judged",
+    ),
+    Quantity(
+        "fit.elastic_tresca",
+        "join",
+        "um",
+        1,
+        elastic_tresca,
+        {"floor": "route.floor", **_PAIR},
+        "interference up to which all is elastic by Tresca, not judged",
     ),
     Quantity("fit.weaker", "join", "", 0, weaker, {"limit": "fit.limit"}, "the part that gives first"),
     Quantity(
@@ -327,6 +346,33 @@ STRENGTH = (
         torque_held,
         {**_PAIR, "force": "fit.force_held"},
         "torque the loosest joint holds",
+    ),
+    *(
+        Quantity(
+            f"fit.torque_{edition}",
+            "join",
+            "N*m",
+            1,
+            torque_smoothed,
+            {
+                **_PAIR,
+                "least": "fit.interference_least",
+                "smoothing": f"fit.smoothing_{edition}",
+                "service": "fit.service",
+                "friction": "fit.friction",
+            },
+            f"torque of the loosest joint, {factor} of the peaks lost",
+        )
+        for edition, factor in (("1988", "0.8"), ("2017", "0.4"))
+    ),
+    Quantity(
+        "fit.slip_safety",
+        "join",
+        "1",
+        2,
+        slip_safety,
+        {"held": "fit.force_held", "asked": "fit.force_asked"},
+        "what the loosest joint holds over what it must carry",
     ),
     Quantity(
         "fit.force_asked",
@@ -366,42 +412,6 @@ STRENGTH = (
         yields_below,
         {**_PAIR, "most": "fit.interference_most", "limit": "fit.limit"},
         "temperature below which the tightest pair yields",
-    ),
-    Quantity(
-        "fit.growth_most",
-        "join",
-        "um",
-        1,
-        growth_most,
-        {**_PAIR, "grip": "fit.grip_most"},
-        "largest growth of the tooth circle",
-    ),
-    Quantity(
-        "fit.growth_least",
-        "join",
-        "um",
-        1,
-        growth_least,
-        {**_PAIR, "grip": "fit.grip_least"},
-        "least growth of the tooth circle",
-    ),
-    Quantity(
-        "fit.growth_uncounted",
-        "join",
-        "um",
-        1,
-        growth_uncounted,
-        {"floor": "route.floor", "growth": "fit.growth_most", "join": ":", "op": "@op"},
-        "growth of finished teeth that no backlash counts",
-    ),
-    Quantity(
-        "fit.hole_closing",
-        "join",
-        "um",
-        1,
-        hole_closing,
-        {**_PAIR, "grip": "fit.grip_most"},
-        "closing of the shaft's hole",
     ),
     Quantity("fit.length_ratio", "join", "1", 2, length_ratio, _PAIR, "length of the joint over its diameter"),
 )

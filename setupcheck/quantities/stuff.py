@@ -6,17 +6,18 @@ from collections.abc import Callable
 from dataclasses import replace
 from functools import cache
 
-from setupcheck.jobfile.models import Part, Properties
+from setupcheck.jobfile.models import Part
+from setupcheck.jobfile.properties import Properties
 from setupcheck.physics.materials import Material, Range, Value, temper_cap
 from setupcheck.quantities.book import Open
-from setupcheck.quantities.contents import material_family
+from setupcheck.quantities.contents import is_porous, material_class, material_family
 from setupcheck.quantities.material_data import UnknownMaterial, material
 from setupcheck.quantities.shop import Floor
 
 STATED = "shop record"
 """Evidence of a value that stands in the job file."""
 ALL_OF_IT = ("modulus", "poisson", "expansion", "density", "specific_heat", "heat_cap")
-"""What has to be said of a material that is not in the list; its strength only where a question needs it."""
+"""What has to be said of a material that is not in the list; strength and conductivity only where a question needs them."""
 
 
 def material_of(floor: Floor, part: str) -> Material | Open:
@@ -40,6 +41,15 @@ def expansion_of(name: str, path: str) -> Range | Open:
     """Mean expansion of a worm or a housing by the name of its material [1/K]. Source: materials.yaml."""
     found = material(name)
     return found.heating if isinstance(found, Material) else Open((path,), found.because)
+
+
+def porous(part: Part) -> bool | None:
+    """Whether a part has pores, by `porous: true` or by the name of its material; None where nothing is said of it."""
+    if part.properties is not None and part.properties.porous:
+        return True
+    if part.material is None:
+        return None if part.properties is None else False
+    return is_porous(part.material)
 
 
 def strength_of(floor: Floor, part: str, found: Material) -> float | Open:
@@ -77,6 +87,7 @@ def _with(found: Material, stated: Properties) -> Material:
         ("tensile_strength", ("tensile_strength",), _value),
         ("density", ("density",), _value),
         ("specific_heat", ("specific_heat",), _value),
+        ("conductivity", ("conductivity",), _value),
         ("heat_cap", ("heat_cap",), _value),
     )
     for key, fields, made in places:
@@ -96,6 +107,7 @@ def _only_stated(given: Part, stated: Properties) -> Material:
     return Material(
         name=given.material or "as stated",
         also=(),
+        of_class=material_class(given.material or ""),
         family=material_family(given.material or ""),
         brittle=stated.brittle,
         note="stated in the job file",
@@ -107,6 +119,7 @@ def _only_stated(given: Part, stated: Properties) -> Material:
         tensile_strength=_value(stated.tensile_strength) if stated.tensile_strength is not None else None,
         density=_value(stated.density),
         specific_heat=_value(stated.specific_heat),
+        conductivity=_value(stated.conductivity) if stated.conductivity is not None else None,
         heat_cap=_value(stated.heat_cap),
         lead=nothing,
         zinc=nothing,

@@ -5,18 +5,23 @@ from __future__ import annotations
 from setupcheck.quantities import holds, judged
 from setupcheck.quantities.advice import ADVICE
 from setupcheck.quantities.book import Quantity
+from setupcheck.quantities.choosing import CHOOSING
 from setupcheck.quantities.clamping import CLAMP
 from setupcheck.quantities.cutter_shape import SHAPE
 from setupcheck.quantities.cutting import CUTTING
 from setupcheck.quantities.division import DIVIDE
+from setupcheck.quantities.growing import GROWING
 from setupcheck.quantities.head_setting import HEAD
 from setupcheck.quantities.joining import JOINING
 from setupcheck.quantities.joint_heat import HEAT
+from setupcheck.quantities.joint_states import IN_STATES
 from setupcheck.quantities.measuring import MEASURE
 from setupcheck.quantities.meshing import MESHING
 from setupcheck.quantities.placing import PLACE
 from setupcheck.quantities.pressing import PRESSING
+from setupcheck.quantities.stated import STATED
 from setupcheck.quantities.strength import STRENGTH
+from setupcheck.quantities.through import THROUGH
 from setupcheck.quantities.tilting import TILT
 
 ROUTE = (
@@ -251,8 +256,13 @@ TABLES: tuple[Quantity, ...] = (
     *HEAD,
     *JOINING,
     *STRENGTH,
+    *IN_STATES,
+    *GROWING,
+    *CHOOSING,
     *PRESSING,
+    *STATED,
     *HEAT,
+    *THROUGH,
     *CUTTING,
     *SHAPE,
     *MESHING,

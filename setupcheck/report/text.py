@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterator
+from collections.abc import Iterator, Sequence
 
 from setupcheck.flow import Review
 from setupcheck.ledger.combine import TRIALS
@@ -11,6 +11,8 @@ from setupcheck.quantities.book import Open, Scope
 from setupcheck.quantities.gates import Gate
 from setupcheck.quantities.judged import Result
 from setupcheck.report.causes import cause_in_words
+from setupcheck.report.heating_plan import heating_plans
+from setupcheck.report.joint import joints
 from setupcheck.report.remedies import remedy_in_words
 from setupcheck.report.uncomputed import in_lines, uncomputed
 from setupcheck.report.wording import as_stated, clean, finer, in_unit, on_the_dial, title_of, unit_of, wrap
@@ -35,6 +37,8 @@ def as_text(found: Review, *, everything: bool = False) -> str:
         _stops(found),
         _findings(found, everything),
         _requirements(found, everything),
+        joints(found),
+        heating_plans(found),
         _worked_out(found),
         _uncomputed(found),
         _gates(found),
@@ -105,12 +109,25 @@ def _findings(found: Review, everything: bool) -> Iterator[str]:
     if not shown:
         return
     yield "FINDINGS"
+    for rules, finding in _alike(shown):
+        yield from _finding(found, finding, rules)
+
+
+def _alike(shown: Sequence[Finding]) -> Iterator[tuple[str, Finding]]:
+    """Each finding once; open ones at one place that wait for the same thing together, with the rules that wait for it."""
+    groups: dict[object, list[Finding]] = {}
     for finding in shown:
-        yield from _finding(found, finding)
+        same = (
+            (finding.at, finding.message, finding.missing) if finding.verdict == "open" else finding.rule,
+            finding.key,
+        )
+        groups.setdefault(same, []).append(finding)
+    for group in groups.values():
+        yield ", ".join(finding.rule for finding in group), group[0]
 
 
-def _finding(found: Review, finding: Finding) -> Iterator[str]:
-    head = f"{finding.verdict}  {finding.rule}  {finding.at or 'job'}"
+def _finding(found: Review, finding: Finding, rules: str) -> Iterator[str]:
+    head = f"{finding.verdict}  {rules}  {finding.at or 'job'}"
     yield from wrap(head + (f", line {finding.line}" if finding.line else ""), first="  ", rest="        ")
     yield from wrap(clean(finding.message) + "." + _margin(finding), first="      ", rest="      ")
     if finding.verdict == "pass":

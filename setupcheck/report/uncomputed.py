@@ -68,6 +68,9 @@ NOT_LOOKED_AT: Mapping[str, Mapping[str, str]] = {
         "smoothing": "smoothing {said}",
         "must_carry": "must carry {said}",
         "serves_at": "serves from {said}",
+        "lead_in": "lead-in {said}",
+        "growth_at": "growth asked at {said}",
+        "pairs": "measured pairs ({said})",
     },
     "Require": {"along": "along {said}", "film": "film of {said}"},
 }
@@ -122,6 +125,9 @@ def _looked(loaded: LoadedJob) -> _Looked:
     return _Looked(frozenset((*_of_joints(loaded), *_of_the_wheel(loaded), *_of_heads(loaded), *_of_limits(loaded))))
 
 
+_OF_A_FIT = ("joint", "friction", "smoothing", "must_carry", "serves_at", "growth_at", "pairs")
+
+
 def _of_joints(loaded: LoadedJob) -> Iterator[str]:
     """What an interference joint is computed from; of any other joint nothing but where it sits."""
     for setup in loaded.job.setups:
@@ -129,11 +135,11 @@ def _of_joints(loaded: LoadedJob) -> Iterator[str]:
         if join is None or join.by not in FITTED:
             continue
         path = f"setups.{setup.op}.join"
-        yield from (f"{path}.{key}" for key in ("joint", "friction", "smoothing", "must_carry", "serves_at"))
+        yield from (f"{path}.{key}" for key in _OF_A_FIT)
         if join.by == "shrink":
             yield from (f"{path}.heat", f"{path}.grips_first")
         else:
-            yield f"machines.{setup.machine}.rating"
+            yield from (f"machines.{setup.machine}.rating", f"{path}.lead_in")
         for ref in (loaded.ref(join.outer), loaded.ref(join.inner)):
             yield f"parts.{ref.part}.surfaces.{ref.surface}.roughness"
             yield f"parts.{ref.part}.properties"

@@ -1,4 +1,4 @@
-"""What the planner takes to the machine: angle and side of lean, cutter and insert, heat, grip and growth, the shim."""
+"""What the planner takes to the machine: angle and side of lean, cutter and insert, the shim."""
 
 from __future__ import annotations
 
@@ -10,7 +10,7 @@ from setupcheck.notation import show, show_angle
 from setupcheck.quantities.book import Known, Scope
 from setupcheck.report.wording import clean
 
-_PIECE = re.compile(r"\{([a-z_.]+)\}")
+_PIECE = re.compile(r"\{([a-z0-9_.]+)\}")
 
 SENTENCES: Sequence[tuple[str, str, str]] = (
     ("setup", "head", "lead angle {tilt.needed}, worst error of the tilt {tilt.worst_error}"),
@@ -28,30 +28,13 @@ SENTENCES: Sequence[tuple[str, str, str]] = (
         "insert",
         "{cutter.width_needed} wide at pitch height and {cutter.tip_width} at its tip fit the thread without backlash",
     ),
-    ("join", "fit", "{fit.said}"),
-    ("join", "fit", "in service {fit.grip_least} to {fit.grip_most}, elastic up to {fit.elastic} ({fit.weaker})"),
-    ("join", "fit", "holds {fit.torque_held} at its loosest and warmest"),
-    ("join", "fit", "holds what it must up to {fit.holds_to} and is loose at {fit.loosens_at}"),
-    ("join", "fit", "the tightest pair yields below {fit.yields_below}"),
-    ("join", "fit", "pressing in takes up to {fit.press_force}"),
-    ("join", "fit", "the root circle grows by {fit.growth_least} to {fit.growth_most} on diameter"),
-    ("join", "fit", "the shaft's hole closes by up to {fit.hole_closing}"),
-    ("join", "heat", "the tightest pair needs {heat.needed}, the hub still has {heat.at_shaft} at the shaft"),
-    (
-        "join",
-        "heat",
-        "a gauge of {heat.go_gauge} has to enter the hot bore, {heat.soak} in the oven make it hot through",
-    ),
-    ("join", "heat", "the tightest pair bites again at {heat.bites_at}"),
-    ("join", "heat", "{heat.window} over the shaft until it may bite, while nothing touches"),
-    ("join", "heat", "a gap of up to {heat.shoulder_gap} may open at the shoulder as it cools"),
     ("place", "place", "{place.shim}"),
 )
 """Kind of thing, what the line is about, and the sentence; it is said where every number in it is known and not zero."""
 
 
 def worked_out(found: Review) -> list[str]:
-    """One line for each thing and subject: `op 70, heat: the tightest pair needs 139 degC, …; 63 s over the shaft …`."""
+    """One line for each thing and subject: `op 60, cutter: tip radius 38.5 mm, …; 6 um of blue marks …`."""
     told: dict[tuple[int, str, str], list[str]] = {}
     for scope, subject, sentence in _all(found):
         where = f"op {scope.op}, " if scope.op is not None else ""
@@ -75,12 +58,12 @@ def _joined(sentences: list[str]) -> str:
 def _all(found: Review) -> Iterator[tuple[Scope, str, str]]:
     for kind, subject, sentence in SENTENCES:
         for scope in found.book.instances(kind):
-            said = _filled(found, scope, sentence)
+            said = filled(found, scope, sentence)
             if said:
                 yield scope, subject, said
 
 
-def _filled(found: Review, scope: Scope, sentence: str) -> str:
+def filled(found: Review, scope: Scope, sentence: str) -> str:
     """The sentence with its numbers; empty where one of them is missing, or all of them are zero."""
     pieces: dict[str, str] = {}
     nothing = True

@@ -11,6 +11,8 @@ from setupcheck.report.wording import clean
 LONGEST = 100
 """Characters of a planner's text that are repeated. Source: our screening choice."""
 
+_OWN_UNIT = {"poisson": "", "density": "kg/m3", "specific_heat": "J/kgK"}
+"""Keys whose bare number is no length, and its unit."""
 _BARE = re.compile(r"[0-9][0-9.]*\s*(±|\+/?-|[+-])[0-9./+\s±-]*")
 """A size with limits and no unit: `13.500 ±0.020`, `32 +0.021/0`."""
 
@@ -37,14 +39,15 @@ def _said(node: object, units: str) -> str:
         case bool() | None:
             return ""
         case int() | float():
-            return f"{plain(node)} {units}"
+            return f"{plain(node)} {units}".strip()
         case str():
             return f"{node} {units}" if _BARE.fullmatch(node) else node
         case list():
             return ", ".join(_said(entry, units) for entry in node)
         case dict():
             return ", ".join(
-                f"{str(key).replace('_', ' ')} {_said(entry, units)}".strip() for key, entry in node.items()
+                f"{str(key).replace('_', ' ')} {_said(entry, _OWN_UNIT.get(str(key), units))}".strip()
+                for key, entry in node.items()
             )
         case _:
             return ""

@@ -6,9 +6,10 @@ from itertools import product
 
 import pytest
 
+from setupcheck.jobfile.service import Warmth
 from setupcheck.physics import interference as fits
 from setupcheck.physics.materials import COLD, Material
-from setupcheck.quantities import strength
+from setupcheck.quantities import growing, strength
 from setupcheck.quantities.joint_shape import Section
 from setupcheck.quantities.material_data import material
 from setupcheck.quantities.pairing import Pair
@@ -56,15 +57,15 @@ def test_growth_pressure_stress_and_closing_are_the_ends_over_every_corner(pair:
     grip = 0.03
     each = corners(pair)
     toothed = [j for j in each if j.hub_outside != 48.0]
-    assert strength.growth_most(pair, grip) == pytest.approx(max(grown(j, grip) for j in toothed))
-    assert strength.growth_least(pair, grip) == pytest.approx(min(grown(j, grip) for j in toothed))
+    assert growing.growth_most(pair, grip) == pytest.approx(max(grown(j, grip) for j in toothed))
+    assert growing.growth_least(pair, grip) == pytest.approx(min(grown(j, grip) for j in toothed))
     pressures = [fits.joint_pressure(j, interference=grip) for j in each]
     assert strength.pressure_most(pair, grip) == pytest.approx(max(pressures))
     assert strength.pressure_least(pair, grip) == pytest.approx(min(pressures))
     hoops = [fits.stresses(j, pressure=p).hub_bore_tangential for j, p in zip(each, pressures, strict=True)]
     assert strength.hoop_most(pair, grip) == pytest.approx(max(hoops))
     closings = [c for j, p in zip(each, pressures, strict=True) if (c := fits.hole_closing(j, pressure=p)) is not None]
-    assert strength.hole_closing(pair, grip) == pytest.approx(max(closings))
+    assert growing.hole_closing(pair, grip) == pytest.approx(max(closings))
 
 
 @pytest.mark.parametrize("pair", PAIRS, ids=lambda p: f"{p.hub.name} on {p.shaft.name}")
@@ -78,6 +79,7 @@ def test_grip_is_the_least_and_the_largest_over_every_expansion_and_temperature(
         hub, shaft = getattr(pair.hub, table), getattr(pair.shaft, table)
         for a, i in product((hub.low, hub.high), (shaft.low, shaft.high)):
             found.append(0.03 + 32.0 * (i - a) * (t - 20.0))
-    assert strength.grip_least(pair, 0.03, 0.0, service) == pytest.approx(min(found))
-    assert strength.grip_least(pair, 0.03, 0.004, service) == pytest.approx(min(found) - 0.004)
-    assert strength.grip_most(pair, 0.03, service) == pytest.approx(max(found))
+    states = (Warmth(service[0], service[0]), Warmth(service[1], service[1]))
+    assert strength.grip_least(pair, 0.03, 0.0, states) == pytest.approx(min(found))
+    assert strength.grip_least(pair, 0.03, 0.004, states) == pytest.approx(min(found) - 0.004)
+    assert strength.grip_most(pair, 0.03, states) == pytest.approx(max(found))

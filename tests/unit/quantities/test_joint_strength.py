@@ -7,6 +7,7 @@ import math
 import pytest
 
 from setupcheck.physics import interference as fits
+from setupcheck.quantities.book import Open
 from setupcheck.quantities.pairing import RZ_PER_RA, Pair
 from setupcheck.quantities.strength import ON_BREAKING
 
@@ -158,3 +159,13 @@ def test_growth_takes_the_soft_end_of_the_hub_and_the_stiff_one_of_the_shaft() -
         number(text, "fit.growth_most")
     )
     assert math.isclose(0.5, number(text, "fit.length_ratio"))
+
+
+def test_no_elastic_figure_is_told_of_a_sintered_ring() -> None:
+    text = changed(("material: CuSn12-C", "material: CuSn12-C\n    properties: {porous: true}"))
+    for name in ("fit.force_held", "fit.elastic", "fit.growth_most", "fit.press_off", "fit.warm_torque"):
+        found = answer(text, name)
+        assert isinstance(found, Open)
+        assert "sintered metal crushes" in found.because
+    assert "fail" == finding(text, "FIT-010").verdict
+    assert "open" == finding(text, "FIT-003").verdict == finding(text, "FIT-004").verdict

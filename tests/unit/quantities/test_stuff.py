@@ -44,6 +44,7 @@ def pair_of(text: str) -> Pair:
         ("tensile_strength", "300 MPa", ("tensile_strength",), 300.0),
         ("density", "8650", ("density",), 8650.0),
         ("specific_heat", "380", ("specific_heat",), 380.0),
+        ("conductivity", "65 W/mK", ("conductivity",), 65.0),
         ("heat_cap", "180 degC", ("heat_cap",), 180.0),
     ],
 )

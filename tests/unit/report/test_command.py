@@ -92,6 +92,8 @@ def test_json_has_format_1_and_the_keys_that_were_promised(job: Path) -> None:
         "quantities",
         "stacks",
         "gates",
+        "joints",
+        "heating_plans",
         "worked_out",
         "findings",
         "cautions",

@@ -8,7 +8,7 @@ import json
 import pytest
 from pydantic import BaseModel
 
-from setupcheck.jobfile import models, setups
+from setupcheck.jobfile import models, properties, setups
 from setupcheck.report.json import as_json
 from setupcheck.report.text import as_text
 from setupcheck.report.uncomputed import NOT_LOOKED_AT, in_lines, uncomputed
@@ -24,7 +24,8 @@ READ = {
     "Pattern": "kind count on_circle at diameter width angle made",
     "Relation": "of about from_ runout face_runout across length",
     "Part": "material surfaces given",
-    "Properties": "modulus poisson expansion yield_strength tensile_strength brittle density specific_heat heat_cap last_temper",
+    "Properties": "modulus poisson expansion yield_strength tensile_strength brittle density specific_heat "
+    "conductivity heat_cap last_temper porous",
     "Worm": "starts hand axial_module reference_diameter tip_diameter pressure_angle end_float",
     "Mesh": "wheel centre_distance shift",
     "Cutter": "kind bar_diameter overhang",
@@ -39,6 +40,7 @@ READ = {
     "Centre": "on by at runout clearance rests x y grip grip_force through turned",
     "Square": "on by face_runout across chip",
     "Spacer": "name length",
+    "MeasuredPair": "name bore journal uncertainty",
     "Stop": "on against error touches radius direction spacers",
     "Clock": "on number error",
     "Hold": "centre and_centre square stop clock",
@@ -61,7 +63,7 @@ READ = {
 
 RECORDS = {
     name: record
-    for module in (models, setups)
+    for module in (models, properties, setups)
     for name, record in vars(module).items()
     if inspect.isclass(record)
     and issubclass(record, BaseModel)
@@ -93,6 +95,17 @@ def test_everything_a_shrunk_joint_states_is_looked_at_and_of_a_screwed_one_noth
         assert said in screwed
     assert "serves from 5 degC to 45 degC" in screwed
     assert "roughness Rz 2.5 um of bore" in screwed
+
+
+def test_properties_that_nothing_computes_with_are_told_with_their_units() -> None:
+    stated = "{density: 8700, poisson: 0.34, specific_heat: 373, conductivity: 52 W/mK, porous: true}"
+    screwed = changed(
+        WHEEL,
+        ("by: shrink", "by: screw"),
+        ("  spindle:\n", f"  spindle:\n    properties: {stated}\n"),
+    )
+    said = " ".join(told(screwed))
+    assert "density 8700 kg/m3, poisson 0.34, specific heat 373 J/kgK, conductivity 52 W/mK, porous" in said
 
 
 def test_of_a_pressed_joint_only_the_heat_is_told() -> None:

@@ -4,6 +4,8 @@ from __future__ import annotations
 
 import json
 
+from setupcheck.report.heating_plan import heating_plans
+from setupcheck.report.joint import joints
 from setupcheck.report.json import as_json
 from setupcheck.report.text import as_text
 from setupcheck.report.worked_out import worked_out
@@ -14,13 +16,19 @@ def lines(text: str) -> str:
     return "\n".join(worked_out(reviewed(text)))
 
 
+def joint(text: str) -> str:
+    """Joint and heating plan as the report prints them, on one line."""
+    found = reviewed(text)
+    return flat("\n".join((*joints(found), *heating_plans(found))))
+
+
 def test_the_wheel_says_angle_side_cutter_insert_fit_and_heat() -> None:
     said = lines(WHEEL)
     assert "op 40, head: lead angle 3deg 34' 35\" (3.5763 deg, 3.9737 gon)" in said  # atan(1.5/24)
     assert "so lean it nose-down" in said
     assert "op 40, cutter: tip radius 20.00 mm, the worm needs more than" in said
-    assert "op 70, fit: interference 16.0 um to 33.0 um at 20 degC" in said  # 32.030 ±0.003 less 32 H5 (0 to 11 um)
-    assert "op 70, heat: the tightest pair needs 139 degC" in said
+    assert "interference 16.0 um to 33.0 um at 20 degC" in joint(WHEEL)  # 32.030 ±0.003 less 32 H5 (0 to 11 um)
+    assert "1 The tightest pair needs 139 degC as it goes over the shaft." in joint(WHEEL)
 
 
 def test_jobs_with_nothing_to_work_out_have_no_such_part() -> None:
@@ -30,16 +38,16 @@ def test_jobs_with_nothing_to_work_out_have_no_such_part() -> None:
 
 
 def test_a_line_with_a_number_missing_is_left_out_whole() -> None:
-    said = lines(changed(WHEEL, (", carry: 12 s", "")))
+    said = joint(changed(WHEEL, (", carry: 12 s", "")))
     assert "the hub still has" not in said
-    assert "over the shaft until it may bite" not in said
+    assert "until it may bite" not in said
     assert "interference 16.0 um to 33.0 um" in said
 
 
 def test_a_gap_at_the_shoulder_is_said_only_where_one_may_open() -> None:
-    assert "at the shoulder" not in lines(WHEEL)
+    assert "at the shoulder" not in joint(WHEEL)
     anywhere = changed(WHEEL, ("grips_first: shoulder-end", "grips_first: anywhere"))
-    assert "a gap of up to 25.3 um may open at the shoulder" in lines(anywhere)  # 33 um x 24.5 mm / 32 mm
+    assert "A gap of up to 25.3 um may open at the shoulder" in joint(anywhere)  # 33 um x 24.5 mm / 32 mm
 
 
 def test_blocks_and_shifts_are_said_where_a_bar_or_a_pivot_is_used() -> None:
@@ -62,11 +70,14 @@ def test_text_and_json_say_the_same() -> None:
     text, data = flat(as_text(found)), json.loads(as_json(found))
     assert worked_out(found) == data["worked_out"]
     assert all(" ".join(line.split()) in text for line in data["worked_out"])
-    assert "fit.holds_to@70" in data["quantities"]
+    assert all(name in data["quantities"] for name in ("fit.holds_to@70", "fit.warm_torque@70", "fit.cold_hoop@70"))
+    (shrunk,), (plan,) = data["joints"], data["heating_plans"]
+    assert 70 == shrunk["op"] == plan["op"]
+    assert all(" ".join(line.split()) in text for line in (*shrunk["says"], *plan["steps"]))
 
 
 def test_a_fit_that_is_none_is_said_as_the_play_it_is() -> None:
-    play = lines(changed(WHEEL, ("diameter: 32.030 ±0.003", "diameter: 31.990 ±0.003")))
-    assert "op 70, fit: play 7.0 um to 24.0 um at 20 degC" in play  # 32 H5 less 31.987 to 31.993
-    both = lines(changed(WHEEL, ("diameter: 32.030 ±0.003", "diameter: 32.005 ±0.003")))
-    assert "op 70, fit: from 9.0 um of play to 8.0 um of interference at 20 degC" in both
+    play = joint(changed(WHEEL, ("diameter: 32.030 ±0.003", "diameter: 31.990 ±0.003")))
+    assert "play 7.0 um to 24.0 um at 20 degC" in play  # 32 H5 less 31.987 to 31.993
+    both = joint(changed(WHEEL, ("diameter: 32.030 ±0.003", "diameter: 32.005 ±0.003")))
+    assert "from 9.0 um of play to 8.0 um of interference at 20 degC" in both

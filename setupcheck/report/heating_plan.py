@@ -1,0 +1,51 @@
+"""The heating plan of a shrink fit as steps to take to the oven, each with its number: what to set, try, carry and hold."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator
+
+from setupcheck.flow import Review
+from setupcheck.quantities.book import Scope
+from setupcheck.report.joint import fitted, has_play, in_words
+from setupcheck.report.wording import wrap
+
+STEPS: tuple[tuple[str, ...], ...] = (
+    (
+        "The tightest pair needs {heat.needed} as it goes over the shaft. The plan gives {heat.planned_low} to "
+        "{heat.planned_high}; the hub's material stands {heat.cap}.",
+        "The tightest pair needs {heat.needed} as it goes over the shaft; the hub's material stands {heat.cap}.",
+        "The tightest pair needs {heat.needed} as it goes over the shaft.",
+    ),
+    ("Leave it in the oven for {heat.soak}, so that it is hot through.",),
+    ("Try a gauge of {heat.go_gauge} in the hot bore; lift the hub only when it enters.",),
+    ("Carried as planned, the hub still has {heat.at_shaft} at the shaft.",),
+    (
+        "Over the shaft there are {heat.window} until it may bite, while nothing touches; it bites at {heat.bites_at}.",
+        "The tightest pair bites at {heat.bites_at}.",
+    ),
+    (
+        "A gap of up to {heat.shoulder_gap} may open at the shoulder as it cools: let that end grip first, or face it after.",
+    ),
+)
+"""The steps in their order, each with shorter forms; one with an unknown number is left out, its finding says what to fill."""
+
+
+def heating_plans(found: Review) -> Iterator[str]:
+    """One numbered plan for each shrink fit."""
+    for number, (scope, steps) in enumerate(_plans(found)):
+        yield from [""] * (number > 0)
+        yield f"HEATING PLAN, op {scope.op}"
+        for step, said in enumerate(steps, 1):
+            yield from wrap(said, first=f"  {step} ", rest="    ")
+
+
+def heating_plans_as_data(found: Review) -> list[dict[str, object]]:
+    """The steps of each plan, by operation."""
+    return [{"op": scope.op, "steps": steps} for scope, steps in _plans(found)]
+
+
+def _plans(found: Review) -> Iterator[tuple[Scope, list[str]]]:
+    for scope, join in fitted(found):
+        steps = in_words(found, scope, STEPS) if join.by == "shrink" and not has_play(found, scope) else []
+        if steps:
+            yield scope, steps
