@@ -7,7 +7,6 @@ from __future__ import annotations
 
 import re
 from collections.abc import Iterator
-from functools import lru_cache
 from typing import Any
 
 import yaml
@@ -18,6 +17,8 @@ from setupcheck.yamlfile.syntax import ODD
 from setupcheck.yamlfile.tree import Data
 
 LOADER = getattr(yaml, "CBaseLoader", yaml.BaseLoader)  # libyaml where it is installed: ten times faster
+_SCALAR, _MAP, _LIST = yaml.ScalarEvent, yaml.MappingStartEvent, yaml.SequenceStartEvent
+_END_OF_MAP, _END_OF_LIST = yaml.MappingEndEvent, yaml.SequenceEndEvent
 _COMMA_IN_A_NUMBER = re.compile(r"[0-9],[0-9]")
 
 
@@ -27,8 +28,8 @@ def plain_data(text: str) -> Data:
     >>> plain_data("limits: [10 um, 2]\\nnote: no"), plain_data("a: 1\\na: 2")
     ({'limits': ['10 um', 2], 'note': 'no'}, None)
     """
-    if "\t" in text or ODD.search(text) or _COMMA_IN_A_NUMBER.search(text):
-        return None
+    if len(text) > limits.MOST_VALUES or "\t" in text or ODD.search(text) or _COMMA_IN_A_NUMBER.search(text):
+        return None  # a text that has fewer characters than values are allowed needs no count of them
     try:
         return _read(iter(LOADER(text).get_event, None))
     except yaml.YAMLError:
@@ -38,36 +39,45 @@ def plain_data(text: str) -> Data:
 def _read(events: Iterator[Any]) -> Data:
     """One pass over the events. `key` is that of the value to come, None while a map awaits one."""
     top: list[Data] = []
-    here: list[Data] | dict[str, Data] = top
-    around: list[tuple[list[Data] | dict[str, Data], str | None]] = []
+    here: Any = top
+    in_map = False
     key: str | None = None
-    documents = values = 0
+    around: list[tuple[Any, bool, str | None]] = []
+    known: set[str] = set()
+    documents = 0
     for event in events:
         kind = type(event)
-        if kind is yaml.ScalarEvent:
-            values += 1
-            if event.tag is not None or event.anchor is not None or values > limits.MOST_VALUES:
+        if kind is _SCALAR:
+            if event.tag is not None or event.anchor is not None:
                 return None
-            if key is None and isinstance(here, dict):
-                key = event.value
-                if key in here or not _is_plain_key(key, quoted=bool(event.style)):
+            value = event.value
+            if in_map and key is None:
+                if value in here:
                     return None
+                if event.style:
+                    if not _is_key(value, quoted=True):
+                        return None
+                elif value not in known:  # few words are keys, and each of them again and again
+                    if not _is_key(value, quoted=False):
+                        return None
+                    known.add(value)
+                key = value
                 continue
-            known = event.value if event.style else plain_scalar(event.value)
-            if isinstance(known, LookAlike):
-                return None
-            value: Data = known
-        elif kind is yaml.MappingStartEvent or kind is yaml.SequenceStartEvent:
-            values += 1
-            unnamed = key is None and isinstance(here, dict)
+            if not event.style:
+                value = plain_scalar(value)
+                if type(value) is LookAlike:
+                    return None
+        elif kind is _MAP or kind is _LIST:
+            unnamed = in_map and key is None
             if event.tag is not None or event.anchor is not None or unnamed or len(around) >= limits.DEEPEST:
                 return None
-            around.append((here, key))
-            here, key = ({} if kind is yaml.MappingStartEvent else []), None
+            around.append((here, in_map, key))
+            in_map = kind is _MAP
+            here, key = ({} if in_map else []), None
             continue
-        elif kind is yaml.MappingEndEvent or kind is yaml.SequenceEndEvent:
+        elif kind is _END_OF_MAP or kind is _END_OF_LIST:
             value = here
-            here, key = around.pop()
+            here, in_map, key = around.pop()
         elif kind is yaml.AliasEvent:
             return None
         else:
@@ -75,16 +85,15 @@ def _read(events: Iterator[Any]) -> Data:
             if documents > 1 or (kind is yaml.DocumentStartEvent and (event.version or event.tags)):
                 return None
             continue
-        if isinstance(here, list):
-            here.append(value)
-        elif key is not None:
+        if in_map:
             here[key] = value
             key = None
+        else:
+            here.append(value)
     return top[0] if top else None
 
 
-@lru_cache  # few words are keys, and each of them again and again
-def _is_plain_key(word: str, *, quoted: bool) -> bool:
+def _is_key(word: str, *, quoted: bool) -> bool:
     """Whether no reader could take the key for anything else."""
     if not word.strip() or len(word) > limits.LONGEST_KEY or "\n" in word:
         return False

@@ -27,6 +27,7 @@ LEFT_TO_THE_READER = {
     "two documents": "a: 1\n---\nb: 2\n",
     "number as a key": "1: a\n",
     "true as a key": "true: a\n",
+    "true as a key, after it stood in quotes": "- 'true': a\n- true: a\n",
     "map as a key": "{a: 1}: b\n",
     "empty key": ": a\n",
     "colon without a blank": "a:b: c\n",
@@ -34,7 +35,7 @@ LEFT_TO_THE_READER = {
     "deep": "[" * 21 + "]" * 21 + "\n",
     "no YAML": "a: [1\n",
     "nothing": "# nothing\n",
-    "many values": "a: [" + "1, " * 50_001 + "1]\n",
+    "many values": f"a: [{'1, ' * 50_001}1]\n",
 }
 
 
