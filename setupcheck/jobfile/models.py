@@ -1,6 +1,6 @@
 """The job models: parts, machines, cutters, worm and mesh, place, requirements. Sizes mm, angles rad, degC, N, s.
 
-Models that describe a setup stand in `setups.py`. All are frozen and refuse unknown keys.
+Models that describe a setup stand in `setups.py`, the heat of a joint in `heating.py`. All are frozen and refuse unknown keys.
 """
 
 # Annotations are evaluated as they stand (no __future__ import): pydantic would have to compile each of them from its text.

@@ -5,6 +5,7 @@ from typing import Annotated, Literal, Self
 
 from pydantic import BeforeValidator, Field, ValidationInfo, model_validator
 
+from setupcheck.jobfile.heating import Heat
 from setupcheck.jobfile.models import (
     Checked,
     Cutter,
@@ -26,7 +27,6 @@ from setupcheck.jobfile.types import (
     AngleBound,
     Bound,
     Carried,
-    Duration,
     Force,
     Fraction,
     Length,
@@ -34,7 +34,6 @@ from setupcheck.jobfile.types import (
     Shop,
     Size,
     Temperature,
-    TemperatureDifference,
     Tilt,
     Version,
     Whole,
@@ -300,16 +299,6 @@ class Cut(Shop):
     each: Scatter | None = None
     spindle_to_axis: dict[Literal["x", "y"], Dim] | None = None
     tool_change_after: Whole | None = Field(default=None, ge=1)
-
-
-class Heat(Shop):
-    hub: Temperature | None = None
-    shaft: Temperature | None = None
-    by: Literal["oven", "hot-plate", "induction", "oil-bath", "flame"] | None = None
-    oven_error: TemperatureDifference | None = None
-    read_by: Literal["contact-probe", "crayon", "infrared"] | None = None
-    carry: Duration | None = None
-    cold_by: Literal["freezer", "dry-ice", "liquid-nitrogen"] | None = None
 
 
 class MeasuredPair(Shop):

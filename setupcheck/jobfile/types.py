@@ -185,6 +185,22 @@ def _carried(given: object) -> object:
     return given
 
 
+def _coolant(given: object) -> Amount:
+    told = _scalar(given)
+    try:
+        found = notation.amount(told)
+    except NotationError as why:
+        raise NotationError(
+            why.problem, "Write litres of nitrogen or kilograms of dry ice, as in 5 l or 2 kg"
+        ) from None
+    if found.dimension not in ("volume", "mass"):
+        raise NotationError(
+            f"{notation.quoted(given)} is no amount of a coolant",
+            "Write litres of nitrogen or kilograms of dry ice, as in 5 l or 2 kg",
+        )
+    return found
+
+
 _MATERIAL_NUMBER = re.compile(r"[0-9]\.[0-9]{4}")
 """`0.6025`, `1.0503`: materials by number (EN 10027-2 and the older German numbers), which read as lengths too."""
 
@@ -227,7 +243,8 @@ Whole = Annotated[int, BeforeValidator(_whole)]
 Housing = Annotated[str, BeforeValidator(_housing)]
 """The name of a material."""
 Temperature = Annotated[float, _plain(notation.temperature)]
-TemperatureDifference = Annotated[float, _plain(notation.temperature_difference)]
+TemperatureDifference = Annotated[float, _plain(lambda given: notation.temperature_difference(given, at_least=0.0))]
+"""An error of a temperature or a distance between two [K], never below zero."""
 Pressure = Annotated[float, _plain(notation.pressure)]
 """A stress or modulus [MPa]; the unit must be written."""
 Expansion = Annotated[float, _plain(notation.expansion)]
@@ -237,6 +254,10 @@ Conductivity = Annotated[float, _plain(notation.conductivity)]
 Roughness = Annotated[notation.Roughness, _plain(notation.roughness)]
 """A roughness with its figure, Ra or Rz."""
 Duration = Annotated[float, _plain(notation.duration)]
+Volume = Annotated[float, _plain(notation.volume)]
+"""A volume [m3]; the unit must be written."""
+Coolant = Annotated[Amount, _plain(_coolant)]
+"""What boils off: litres of liquid nitrogen [m3] or a mass of dry ice [kg]."""
 Force = Annotated[float, _plain(notation.force)]
 """A force [N]; the unit must be written."""
 Speed = Annotated[float, _plain(notation.speed)]

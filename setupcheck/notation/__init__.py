@@ -1,6 +1,6 @@
 """Shop notation: reads lengths, sizes, angles and the rest as a planner writes them, and writes them back.
 
-Base units come out: mm, rad, degC, N, N*mm, MPa, s, kg, rev/min. Every refusal is a `NotationError`, a ValueError whose
+Base units come out: mm, rad, degC, N, N*mm, MPa, s, kg, rev/min, m3. Every refusal is a `NotationError`, a ValueError whose
 text says what is wrong and what to write. Leaf package: standard library only.
 """
 
@@ -22,6 +22,7 @@ from setupcheck.notation.amounts import (
     temperature,
     temperature_difference,
     torque,
+    volume,
 )
 from setupcheck.notation.angles import angle, angle_bound
 from setupcheck.notation.lengths import Units, bound, length, length_range, span
@@ -67,4 +68,5 @@ __all__ = [
     "temperature",
     "temperature_difference",
     "torque",
+    "volume",
 ]

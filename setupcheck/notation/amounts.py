@@ -33,6 +33,7 @@ from setupcheck.notation.units import (
     TEMPERATURE,
     TEMPERATURE_DIFFERENCE,
     TORQUE,
+    VOLUME,
     Kind,
     kind_of,
     spelling,
@@ -53,7 +54,7 @@ NUMBER_ALONE = Kind("number", "a number", {}, "a number without unit", "72")
 
 Dimension = Literal[
     "length", "angle", "torque", "force", "fraction", "temperature", "temperature_difference", "pressure", "duration",
-    "mass", "speed", "expansion", "conductivity", "number",
+    "mass", "speed", "expansion", "conductivity", "volume", "number",
 ]  # fmt: skip
 
 
@@ -188,6 +189,15 @@ def mass(given: Given, *, at_least: float | None = 0.0) -> float:
     return _in_base(given, MASS, at_least)
 
 
+def volume(given: Given, *, at_least: float | None = 0.0) -> float:
+    """A volume: `40 m3`, `5 l`, `1400 ft3`. Returns m3.
+
+    >>> volume("5 l"), round(volume("1000 ft3"), 4)
+    (0.005, 28.3168)
+    """
+    return _in_base(given, VOLUME, at_least)
+
+
 def speed(given: Given, *, at_least: float | None = 0.0) -> float:
     """A speed of rotation: `1400 rpm`, `1400 1/min`. Returns rev/min.
 
@@ -297,6 +307,8 @@ def _amount_of(given: Given, kind: Kind, symmetrical: bool) -> Amount:
             return Amount(mass(text), "mass")
         case "speed":
             return Amount(speed(text), "speed")
+        case "volume":
+            return Amount(volume(text), "volume")
         case _:
             return Amount(fraction(text), "fraction")
 

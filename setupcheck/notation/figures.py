@@ -99,7 +99,7 @@ def text_of(given: Given, kind: Kind) -> str:
 
 def refuse_odd_characters(text: str, given: Given, kind: Kind) -> None:
     """Decimal commas and digits of other alphabets never reach a number."""
-    if not text.isascii() and any(c.isdigit() and not c.isascii() and c != "\u00b2" for c in text):
+    if not text.isascii() and any(c.isdigit() and not c.isascii() and c not in "\u00b2\u00b3" for c in text):
         import unicodedata
 
         typed = unicodedata.normalize("NFKC", text).replace("\u2044", "/")

@@ -6,7 +6,7 @@ import math
 from typing import Literal
 
 # What a value in the base unit is multiplied with to stand in the display unit. Bases: mm, rad, degC, MPa, N, N*mm, s,
-# kg, rev/min, share of 1. Inch, pound: see `units`.
+# kg, rev/min, m3, share of 1. Inch, pound: see `units`.
 FACTOR: dict[str, float] = {
     "mm": 1.0, "um": 1000.0, "in": 1 / 25.4, "thou": 1000 / 25.4,
     "rad": 1.0, "mrad": 1000.0, "urad": 1e6, "deg": 180 / math.pi, "gon": 200 / math.pi,
@@ -14,7 +14,7 @@ FACTOR: dict[str, float] = {
     "degC": 1.0, "K": 1.0,
     "MPa": 1.0, "GPa": 0.001, "N": 1.0, "kN": 0.001, "N*m": 0.001, "N*mm": 1.0,
     "s": 1.0, "min": 1 / 60, "h": 1 / 3600,
-    "kg": 1.0, "rpm": 1.0,
+    "kg": 1.0, "rpm": 1.0, "m3": 1.0, "l": 1000.0,
     "%": 100.0, "1": 1.0,
 }  # fmt: skip
 _WRITTEN = {"arcsec": '"', "arcmin": "'", "N*m": " N m", "N*mm": " N mm", "1": ""}

@@ -1,7 +1,7 @@
 """Units that a shop writes, and their exact factors to the base units of this package.
 
 A factor is a fraction of whole numbers, so that `12 um`, `0.012 mm` and `0.012` give the same float.
-Bases: mm, N, N*mm, MPa, s, kg, rev/min. Angles are kept in degrees or in radians and made to rad in `angle`.
+Bases: mm, N, N*mm, MPa, s, kg, rev/min, m3. Angles are kept in degrees or in radians and made to rad in `angle`.
 Sources: SI brochure for the metric units; inch 25.4 mm and pound 0.45359237 kg exactly (international yard and pound
 agreement, 1959); pound-force from the standard gravity 9.80665 m/s2 exactly (3rd CGPM, 1901).
 """
@@ -22,6 +22,7 @@ _INCH: Ratio = (254, 10)  # mm
 _LBF_FT: Ratio = (_LBF[0] * _FOOT[0], _LBF[1] * _FOOT[1])
 _LBF_IN: Ratio = (_LBF[0] * _INCH[0], _LBF[1] * _INCH[1])
 _PSI: Ratio = (_LBF[0] * _INCH[1] ** 2, _LBF[1] * _INCH[0] ** 2)  # N/mm2
+_CUBIC_FOOT: Ratio = (_FOOT[0] ** 3, (_FOOT[1] * 1000) ** 3)  # m3
 
 
 @record
@@ -206,8 +207,28 @@ SPEED = Kind(
     },
 )  # fmt: skip
 
+_GALLON = "A gallon is 3.8 l in one country and 4.5 l in another: write l"
+VOLUME = Kind(
+    "volume",
+    "a volume",
+    {
+        "m3": (1, 1), "m\u00b3": (1, 1), "m^3": (1, 1), "cbm": (1, 1),
+        "l": (1, 1000), "L": (1, 1000), "litre": (1, 1000), "litres": (1, 1000), "liter": (1, 1000), "liters": (1, 1000),
+        "ml": (1, 1_000_000), "ft3": _CUBIC_FOOT, "ft\u00b3": _CUBIC_FOOT, "cu*ft": _CUBIC_FOOT,
+    },
+    "m3, l or ft3",
+    "40 m3",
+    {
+        "m2": "The unit m2 is an area: write the volume in m3",
+        "m\u00b2": "The unit m2 is an area: write the volume in m3",
+        "gal": _GALLON, "gallon": _GALLON, "gallons": _GALLON,
+    },
+)  # fmt: skip
+
 # In the order in which a unit of unknown kind is looked up: the " is seconds of arc before it is inches.
-KINDS = (ANGLE, LENGTH, TEMPERATURE, TORQUE, FORCE, PRESSURE, DURATION, FRACTION, MASS, SPEED, EXPANSION, CONDUCTIVITY)
+KINDS = (
+    ANGLE, LENGTH, TEMPERATURE, TORQUE, FORCE, PRESSURE, DURATION, FRACTION, MASS, SPEED, EXPANSION, CONDUCTIVITY, VOLUME,
+)  # fmt: skip
 
 _JOIN = re.compile(r"\s*\*\s*|\s+")
 

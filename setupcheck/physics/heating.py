@@ -232,7 +232,8 @@ def film_coefficient(*, surface: float, air: float, diameter: float) -> float:
     """Heat transfer of a horizontal cylinder in still air [W/m2K], temperatures in degC, diameter in mm.
 
     Nu = {0.60 + 0.387 Ra^(1/6) / [1 + (0.559/Pr)^(9/16)]^(8/27)}^2,  Ra = g (T_s - T_a) D^3 / (T_f nu a), kelvin
-    Validity: Ra <= 1e12, still air; faces and bore of a ring by the same value, 30 % either way. Draught: more.
+    Validity: Ra <= 1e12, still air, a cylinder colder than it as well; faces and bore of a ring by the same value, 30 % either
+    way. Draught: more.
     Source: Churchill and Chu (1975), through textbooks; power fits of air from memory. With the
     tables of two textbooks in their place h changes by 0.1 and 0.9 % (tests/published).
 
@@ -266,8 +267,12 @@ def heat_loss(ring: Ring, *, temperature: float, air: float, film: float | None 
     return ring.surface * (h * (temperature - air) + radiated)
 
 
-def cooled_temperature(ring: Ring, *, start: float, seconds: float, air: float, film: float | None = None) -> float:
+def cooled_temperature(
+    ring: Ring, *, start: float, seconds: float, air: float, film: float | None = None, steps: int = _STEPS
+) -> float:
     """Temperature of a ring after some time in the air [degC]; start - this is the loss in the carry.
+
+    A ring colder than the air is warmed by the same law; frost on it is not counted.
 
     m c dT/dt = -q(T), Runge-Kutta of fourth order.
     Validity: one temperature in the whole ring (`biot_number` below LUMPED_BELOW, as metal rings in air have it), still air, no
@@ -280,7 +285,7 @@ def cooled_temperature(ring: Ring, *, start: float, seconds: float, air: float, 
     """
     if seconds < 0.0:
         raise ValueError("a time cannot be below 0")
-    step = seconds / _STEPS
+    step = seconds / steps
     capacity = ring.heat_capacity
     low, high = sorted((start, air))  # a foil of no mass would overshoot the air within one step
 
@@ -288,7 +293,7 @@ def cooled_temperature(ring: Ring, *, start: float, seconds: float, air: float, 
         return -heat_loss(ring, temperature=min(max(temperature, low), high), air=air, film=film) / capacity
 
     now = start
-    for _ in range(_STEPS):
+    for _ in range(steps):
         a = rate(now)
         b = rate(now + step / 2.0 * a)
         c = rate(now + step / 2.0 * b)
@@ -316,26 +321,3 @@ def carry_time(ring: Ring, *, start: float, until: float, air: float, film: floa
         for i in range(_STEPS + 1)
     ]
     return ring.heat_capacity * width / 3.0 * math.fsum(terms)
-
-
-def seating_time(
-    ring: Ring, *, hub_temperature: float, shaft_temperature: float, until: float, gap: float, length: float
-) -> float:
-    """Time over the cold shaft, before anything touches, until the hub has come down to a temperature [s].
-
-    t = tau ln[(T_hub - T_shaft) / (T - T_shaft)],  tau = m c s / (k_air pi D L);  s = gap on the radius, half the play
-    Validity: an upper bound that ends at the first contact, and the shaft's own warming is left out; order of magnitude.
-    Raises: ValueError for gap or length not above 0.  Source: conduction through the gap, derived here.
-
-    >>> ring = Ring(bore=100, outside=140, length=30, density=8770, specific_heat=377, emissivity=DULL)
-    >>> round(seating_time(ring, hub_temperature=120, shaft_temperature=20, until=115, gap=0.05, length=30), 1)
-    6.8
-    """
-    if not (gap > 0.0 and length > 0.0):
-        raise ValueError("gap and length must be above 0")
-    if until >= hub_temperature:
-        return 0.0
-    if until <= shaft_temperature:
-        return math.inf
-    constant = ring.heat_capacity * gap / (AIR_CONDUCTIVITY * math.pi * ring.bore * length) * 1e3
-    return constant * math.log((hub_temperature - shaft_temperature) / (until - shaft_temperature))

@@ -13,13 +13,12 @@ from setupcheck.physics.materials import expansion_for
 from setupcheck.quantities.book import Quantity
 from setupcheck.quantities.drive import WheelCut, middle
 from setupcheck.quantities.joining import heat_error
-from setupcheck.quantities.joint_heat import carry_loss
+from setupcheck.quantities.joint_heat import carry_loss, unheated
+from setupcheck.quantities.opening import SPARE, hub_expansion
 from setupcheck.quantities.pairing import Pair
 from setupcheck.quantities.shop import Floor
 from setupcheck.quantities.strength import force_held
 
-SPARE = 20.0
-"""Kelvin above the least that HEAT-003 asks for. Source: the rule book."""
 BEST = (1.4, 2.0)
 """Cutter circles that mark best, over the worm's tip radius. Source: own simulation (from memory)."""
 SETTLED = 8
@@ -36,6 +35,8 @@ def oven(floor: Floor, join: Join, pair: Pair, most: float, needed: float, cap: 
     What the carry takes is worked out for each setting: a hotter hub loses more.
     """
     heat = join.heat
+    if heat is not None and heat.by_cold_alone(floor.loaded.job.room):
+        return _beside_cold(pair, unheated(join, floor.loaded.job.room), most, needed, cap)
     error = heat_error(heat) if heat is not None else None
     if heat is None or error is None or heat.carry is None:
         return None
@@ -51,13 +52,16 @@ def oven(floor: Floor, join: Join, pair: Pair, most: float, needed: float, cap: 
     for _ in range(SETTLED):
         least, wanted = for_need(needed, least), for_need(needed + SPARE, wanted)
     highest = cap - error[0]
+    if wanted <= floor.loaded.job.room:  # the cold of the shaft does it
+        return None
     low, high = math.ceil(least), math.floor(highest)
     asked = wanted if wanted <= high else for_need(needed + SPARE, float(high))
     expansion = expansion_for("joining", "hub", pair.hub, temperature=100.0).value
     fewer = _up((asked - high) * expansion * pair.diameter)
-    less = f"chill the shaft, or take {show(fewer, 'um', 1)} less interference"
+    chill = "chill the shaft further" if heat.chills(floor.loaded.job.room) else "chill the shaft"
+    less = f"{chill}, or take {show(fewer, 'um', 1)} less interference"
     if fewer >= most:  # nothing would be left of it
-        less = "chill the shaft, or carry the hub faster"
+        less = f"{chill}, or carry the hub faster"
     if low > high:
         return (
             f"Heat alone does not do it: it takes {low} degC, and {high} degC is the most this hub may be set to. "
@@ -71,6 +75,19 @@ def oven(floor: Floor, join: Join, pair: Pair, most: float, needed: float, cap: 
     if heat.hub is not None and high <= heat.hub <= highest:
         return f"The heat stands at its most: {less}."
     return f"Set the heat to {high} degC, the most this material and oven allow, and {less}."
+
+
+def _beside_cold(pair: Pair, hub_at: float, most: float, needed: float, cap: float) -> str | None:
+    """What to do beside chilling the shaft; None where it is cold enough. Source: arithmetic on heat.needed."""
+    wanted = math.ceil(needed + SPARE)
+    if hub_at >= needed + SPARE:
+        return None
+    fewer = _up((needed + SPARE - hub_at) * hub_expansion(pair, needed) * pair.diameter)
+    ways = [f"warm the hub until {wanted} degC are left at the shaft"] if wanted <= cap else []
+    ways += [f"take {show(fewer, 'um', 1)} less interference"] if fewer < most else []
+    ways = ways or ["make the interference smaller and the hub warmer"]
+    said = ", or ".join(ways)
+    return f"Cold alone does not do it: {said}." if hub_at < needed else f"{said[:1].upper()}{said[1:]}."
 
 
 def lead(needed: float) -> str:

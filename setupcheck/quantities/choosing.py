@@ -10,6 +10,7 @@ from setupcheck.notation import show
 from setupcheck.physics.materials import expansion_for
 from setupcheck.quantities.book import Open, Quantity
 from setupcheck.quantities.joining import JointSizes
+from setupcheck.quantities.opening import hub_expansion
 from setupcheck.quantities.pairing import Pair
 from setupcheck.quantities.shop import Floor
 from setupcheck.quantities.strength import force_held
@@ -37,14 +38,26 @@ def grip_needed(pair: Pair, asked: float, friction: float) -> float:
 
 
 def most_joined(
-    pair: Pair, most: float, needed: float, cap: float, low: float, high: float, loss: float
+    pair: Pair,
+    most: float,
+    needed: float,
+    cap: float,
+    at_shaft: float,
+    low: float | None,
+    high: float | None,
+    loss: float | None,
 ) -> float | None:
     """Largest interference that the highest setting of the heat still opens [mm]; None below zero.
+
+    By cold alone nothing is set, and it is what a hub of the room's temperature still takes.
 
     U = U_max + alpha_A D (cap - error of the heat, both ways - loss in the carry - needed), hub expansion low
     low, high  least and most heat that the plan gives, so that high - low is the error both ways
     Source: physics.heating.joining_temperature, straight in the interference.
     """
+    if low is None or high is None or loss is None:
+        alone = most + hub_expansion(pair, needed) * pair.diameter * (at_shaft - needed)
+        return alone if alone > 0.0 else None
     expansion = expansion_for("joining", "hub", pair.hub, temperature=100.0).value
     found = most + expansion * pair.diameter * (cap - (high - low) - loss - needed)
     return found if found > 0.0 else None
@@ -184,8 +197,10 @@ CHOOSING = (
             "low": "heat.planned_low",
             "high": "heat.planned_high",
             "loss": "heat.carry_loss",
+            "at_shaft": "heat.at_shaft",
         },
         "largest interference that heat still opens",
+        {"low": None, "high": None, "loss": None},
     ),
     Quantity(
         "fit.window",

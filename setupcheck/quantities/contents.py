@@ -75,7 +75,7 @@ _BY_NUMBER: dict[Content, str] = {
 }
 """Names that carry no symbol: free-cutting aluminium and steel with lead; aluminium of the 7000 series, brass and
 galvanized steel with zinc; UNS and EN numbers of coppers with beryllium. Source: common designations, from memory."""
-_LOW_TEMPER = 150.0
+LOW_TEMPER = 150.0
 """degC: a steel that stands no more than this in one heating is hardened and tempered low. Source: rules/data/materials.yaml."""
 
 
@@ -144,7 +144,7 @@ def breaks(found: Material) -> bool:
 
     Source: the list of materials or the job file (`brittle`, and steels that stand no more than a low temper).
     """
-    return found.brittle or (found.family == "steel" and found.heat_cap.value <= _LOW_TEMPER)
+    return found.brittle or (found.family == "steel" and found.heat_cap.value <= LOW_TEMPER)
 
 
 def _plain(name: str) -> str:

@@ -2,10 +2,12 @@
 
 from __future__ import annotations
 
+from setupcheck.jobfile.heating import COLDEST, Heat
 from setupcheck.jobfile.models import Flat, Round
 from setupcheck.jobfile.names import Ref
-from setupcheck.jobfile.setups import Heat, Join, Setup
+from setupcheck.jobfile.setups import Join, Setup
 from setupcheck.quantities.book import Open, Scope
+from setupcheck.quantities.chilling import cold_error
 from setupcheck.quantities.contents import breaks, holds, material_family
 from setupcheck.quantities.joining import heat_error
 from setupcheck.quantities.readings import Reading
@@ -25,8 +27,6 @@ _TOUCH = 1e-6
 """mm within which two surfaces end at one height."""
 COLD_BELOW = 10.0
 """Kelvin under the room from which a shaft counts as chilled. Source: our screening choice."""
-CHILLED_TO = {"dry-ice": -78.5, "liquid-nitrogen": -196.0}
-"""degC that a part comes to where no temperature is stated. Source: sublimation and boiling point, published (pages opened)."""
 
 
 @record
@@ -82,6 +82,8 @@ def _joint_fact(floor: Floor, setup: Setup, join: Join, name: str) -> Fact:
             return join.joint if join.joint is not None else UnknownFact(f"{path}.joint")
         case "hub.may_trap":
             return _may_trap(floor, join)
+        case "join.may_trap":
+            return _may_trap(floor, join) or _hollow(floor, floor.loaded.ref(join.inner).part)
         case "hub.brittle":
             return _breaks(floor, floor.loaded.ref(join.outer).part)
         case "join.brittle":
@@ -100,10 +102,13 @@ def _heat_fact(floor: Floor, join: Join, name: str, path: str) -> Fact:
     if heat is None and join.by != "shrink":
         return None
     heat = heat if heat is not None else Heat()
-    chilled = heat.shaft is not None and heat.shaft < floor.loaded.job.room - COLD_BELOW
+    room = floor.loaded.job.room
+    chilled, cold_alone = heat.shaft is not None and heat.shaft < room - COLD_BELOW, heat.by_cold_alone(room)
     match name:
         case "heat.by":
-            return heat.by if heat.by is not None else UnknownFact(f"{path}.by")
+            return heat.by if heat.by is not None else None if cold_alone else UnknownFact(f"{path}.by")
+        case "heat.hot" | "heat.above_cap" if cold_alone:
+            return False
         case "heat.hot":
             found = heat_error(heat)
             hottest = heat.hub + (found[0] if found is not None else 0.0) if heat.hub is not None else None
@@ -115,7 +120,9 @@ def _heat_fact(floor: Floor, join: Join, name: str, path: str) -> Fact:
         case "heat.deep_cold":
             if heat.cold_by is None and heat.shaft is None:
                 return False
-            coldest = heat.shaft if heat.shaft is not None else CHILLED_TO.get(heat.cold_by or "")
+            error = cold_error(heat)
+            off = error[0] if error is not None else 0.0
+            coldest = heat.shaft - off if heat.shaft is not None else COLDEST.get(heat.cold_by or "")
             return coldest < DEEP_COLD if coldest is not None else UnknownFact(f"{path}.shaft")
     return None
 
@@ -149,6 +156,14 @@ def _may_trap(floor: Floor, join: Join) -> bool:
         if bore.low <= open_to + _TOUCH:
             open_to = max(open_to, bore.high)
     return open_to < max(s.high for s in shapes) - _TOUCH
+
+
+def _hollow(floor: Floor, part: str) -> bool:
+    """Whether a part has a bore, a thread or holes that hold what it is dipped in."""
+    return any(
+        s.kind in ("bore", "holes", "thread") or (isinstance(s, Round) and s.hole is not None)
+        for s in floor.loaded.job.parts[part].surfaces.values()
+    )
 
 
 def _breaks(floor: Floor, part: str) -> bool | UnknownFact:

@@ -47,9 +47,12 @@ def table() -> dict[tuple[str, str, str, str], Friction]:
 
 
 def friction(*, hub: str, shaft: str, by: str, joint: str) -> Friction | None:
-    """The row for a pair; None where the table has none.
+    """The row for a pair, or for the same two materials the other way round; None where the table has neither.
+
+    Two surfaces rub alike whichever of them is outside.  Source: rules/data/friction.yaml; the exchange is our choice.
 
     >>> friction(hub="copper-alloy", shaft="steel", by="shrink", joint="degreased").low
     0.17
     """
-    return table().get((hub, shaft, by, joint))
+    rows = table()
+    return rows.get((hub, shaft, by, joint)) or rows.get((shaft, hub, by, joint))

@@ -2,9 +2,10 @@
 
 from __future__ import annotations
 
+from setupcheck.jobfile.heating import Heat
 from setupcheck.jobfile.models import Dimension, Round
 from setupcheck.jobfile.names import Ref
-from setupcheck.jobfile.setups import Heat, Join
+from setupcheck.jobfile.setups import Join
 from setupcheck.ledger.account import Account
 from setupcheck.ledger.causes import Cause
 from setupcheck.notation import show
@@ -132,43 +133,39 @@ def fit_in_words(floor: Floor, most: float, least: float) -> str:
             return f"from {low} of play to {high} of interference at 20 degC"
 
 
-def _expansion(floor: Floor, part: str, of: str, temperature: float) -> float | Open:
-    """Mean expansion that is safe for joining [1/K]: the low end of the hub, the high end of a shaft."""
+def needed(floor: Floor, join: Join, most: float, sizes: JointSizes, shaft_at: float) -> float | Open | None:
+    """Temperature the hub must have as it goes over the shaft [degC], for the tightest pair and the usual play.
+
+    T = 20 + [U_max + play + alpha_I D (T_shaft - 20)] / (alpha_A D); sizes hold at 20 degC, whatever the room has. Below
+    20 degC, where a well chilled shaft goes into a cold hub, the hub's expansion is taken at its high end.
+    shaft_at  warmest the shaft may be when it meets the hub [degC]
+    Source: derived in physics.heating, agrees with DIN 7190 (from memory); expansions from rules/data/materials.yaml.
+    """
+    from setupcheck.physics.heating import REFERENCE_TEMPERATURE, joining_play, joining_temperature
     from setupcheck.physics.materials import expansion_for
     from setupcheck.quantities.stuff import material_of
 
-    found = material_of(floor, part)
-    if isinstance(found, Open):
-        return found
-    return expansion_for("joining", "hub" if of == "hub" else "shaft", found, temperature=temperature).value
-
-
-def needed(floor: Floor, join: Join, most: float, sizes: JointSizes) -> float | Open | None:
-    """Temperature the hub must have as it goes over the shaft [degC], for the tightest pair and the usual play.
-
-    T = 20 + [U_max + play + alpha_I D (T_shaft - 20)] / (alpha_A D); sizes hold at 20 degC, whatever the room has.
-    Source: derived in physics.heating, agrees with DIN 7190 (from memory); expansions from rules/data/materials.yaml.
-    """
-    from setupcheck.physics.heating import joining_play, joining_temperature
-
     if join.by != "shrink" or most <= 0.0:
         return None
-    outer, inner = floor.loaded.ref(join.outer), floor.loaded.ref(join.inner)
-    shaft_at = join.heat.shaft if join.heat is not None and join.heat.shaft is not None else floor.loaded.job.room
-    hub = _expansion(floor, outer.part, "hub", 100.0)
-    shaft = _expansion(floor, inner.part, "shaft", shaft_at)
+    hub, shaft = (material_of(floor, floor.loaded.ref(text).part) for text in (join.outer, join.inner))
     opened = [x for x in (hub, shaft) if isinstance(x, Open)]
     if opened or isinstance(hub, Open) or isinstance(shaft, Open):
         return Open(tuple(m for x in opened for m in x.missing), "; ".join(x.because for x in opened if x.because))
-    try:
+    shaft_expansion = expansion_for("joining", "shaft", shaft, temperature=shaft_at).value
+
+    def at(hub_expansion: float) -> float:
         return joining_temperature(
             most,
             play=joining_play(sizes.nominal),
             diameter=sizes.nominal,
-            hub_expansion=hub,
-            shaft_expansion=shaft,
+            hub_expansion=hub_expansion,
+            shaft_expansion=shaft_expansion,
             shaft_temperature=shaft_at,
         )
+
+    try:
+        warm = at(hub.heating.low)
+        return warm if warm >= REFERENCE_TEMPERATURE else at(hub.heating.high)
     except ValueError as why:
         raise OutOfRange(str(why)) from None
 
@@ -187,31 +184,31 @@ def heat_error(heat: Heat) -> tuple[float, str] | None:
     return (row.value, row.name) if row is not None else None
 
 
-def _planned(join: Join, op: int, way: float) -> Known | Open | None:
-    """Planned heat with the error of its source taken one way [degC]: -1 the least, +1 the most."""
-    if join.by != "shrink":
-        return None
+def _planned(floor: Floor, join: Join, op: int, way: float) -> Known | Open | None:
+    """Planned heat with the error of its source taken one way [degC]: -1 the least, +1 the most; None by cold alone."""
     path, heat = f"setups.{op}.join.heat", join.heat if join.heat is not None else Heat()
+    if join.by != "shrink" or heat.by_cold_alone(floor.loaded.job.room):
+        return None
     error = heat_error(heat)
     if heat.hub is None or error is None:
         return Open((f"{path}.hub",) * (heat.hub is None) + (f"{path}.oven_error",) * (error is None))
     return Known(heat.hub + way * error[0], frozenset({error[1]} - {""}))
 
 
-def planned_low(join: Join, op: int) -> Known | Open | None:
+def planned_low(floor: Floor, join: Join, op: int) -> Known | Open | None:
     """Planned heat less the error of the oven [degC]; what is lost on the way is not taken off.
 
     Source: the job file; a typical error of the heat source where none is stated.
     """
-    return _planned(join, op, -1.0)
+    return _planned(floor, join, op, -1.0)
 
 
-def planned_high(join: Join, op: int) -> Known | Open | None:
+def planned_high(floor: Floor, join: Join, op: int) -> Known | Open | None:
     """Planned heat and the error of the oven [degC].
 
     Source: the job file; a typical error of the heat source where none is stated.
     """
-    return _planned(join, op, +1.0)
+    return _planned(floor, join, op, +1.0)
 
 
 def kind_of_error(join: Join, planned: float) -> str:
@@ -250,13 +247,17 @@ JOINING = (
         "the fit over its limits, in words",
     ),
     Quantity("fit.kind", "join", "", 0, kind, {**_MOST, "least": "fit.interference_least"}, "kind of the fit"),
-    Quantity("heat.needed", "join", "degC", 0, needed, {**_HERE, **_MOST, **_SIZES}, "heat the hub needs to go on"),
     Quantity(
-        "heat.planned_low", "join", "degC", 0, planned_low, {"join": ":", "op": "@op"}, "least heat the plan gives"
+        "heat.needed",
+        "join",
+        "degC",
+        0,
+        needed,
+        {**_HERE, **_MOST, **_SIZES, "shaft_at": "heat.shaft_at"},
+        "heat the hub needs to go on",
     ),
-    Quantity(
-        "heat.planned_high", "join", "degC", 0, planned_high, {"join": ":", "op": "@op"}, "most heat the plan gives"
-    ),
+    Quantity("heat.planned_low", "join", "degC", 0, planned_low, {**_HERE, "op": "@op"}, "least heat the plan gives"),
+    Quantity("heat.planned_high", "join", "degC", 0, planned_high, {**_HERE, "op": "@op"}, "most heat the plan gives"),
     Quantity(
         "heat.error_kind",
         "join",

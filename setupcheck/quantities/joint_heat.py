@@ -3,19 +3,22 @@
 from __future__ import annotations
 
 import math
+from dataclasses import replace
 
 from setupcheck.jobfile.setups import Join
+from setupcheck.physics.carrying import time_to_close
 from setupcheck.physics.heating import (
+    BRIGHT,
     DULL,
+    REFERENCE_TEMPERATURE,
     Ring,
     cooled_temperature,
     joining_play,
     lowest_hub_temperature,
-    seating_time,
     shoulder_gap,
 )
-from setupcheck.physics.materials import expansion_for
 from setupcheck.quantities.book import Open, OutOfRange, Quantity
+from setupcheck.quantities.chilling import contraction, out_of_the_cold, seat_of
 from setupcheck.quantities.joining import JointSizes
 from setupcheck.quantities.pairing import Pair
 from setupcheck.quantities.shop import Floor
@@ -23,14 +26,19 @@ from setupcheck.quantities.stuff import material_of
 
 SOAK_PER_MM = 180.0
 """Seconds in an oven for each mm of wall. Source: a coupling maker's instruction (excerpt opened); still air, no fan."""
+SOAK_IN_OIL_PER_MM = 1800.0 / 25.4
+"""Seconds in a stirred oil bath for each mm of wall: 30 min an inch, the upper end of 20 to 30. Source: shop advice for bearings
+(excerpt opened)."""
+GAUGE_STEP = {"mm": 0.001, "in": 0.0001 * 25.4}
+"""What a gauge's size is rounded up to [mm], by the units of the file."""
 LEFT_WHEN_IT_GRIPS = 0.3
 """Share of the joining play below which a hub may bite. Source: our screening choice."""
 
 
-def ring_of(pair: Pair) -> Ring:
-    """The hub over the joint as one dull ring of the same volume. Raises: OutOfRange for sizes that are no ring.
+def ring_of(pair: Pair, emissivity: float = DULL) -> Ring:
+    """The hub over the joint as one ring of the same volume. Raises: OutOfRange for sizes that are no ring.
 
-    Source: lumped capacity; emissivity of dull metal, which loses more (physics.heating).
+    Source: lumped capacity; dull metal, which loses more, where nothing else is said (physics.heating).
     """
     thinnest = min(s.outside for s in pair.sections)
     if thinnest <= pair.diameter:  # its volume would be negative, and the mean below would hide it
@@ -44,7 +52,7 @@ def ring_of(pair: Pair) -> Ring:
             length=length,
             density=pair.hub.density.value,
             specific_heat=pair.hub.specific_heat.value,
-            emissivity=DULL,
+            emissivity=emissivity,
         )
     except ValueError as why:
         raise OutOfRange(str(why)) from None
@@ -55,21 +63,40 @@ def carry_loss(
 ) -> float | Open | None:
     """Heat lost between oven and shaft, in still air [K]: the hub's capacity against convection and radiation.
 
-    `biot` is asked for so that a hub which is not of one temperature throughout has no such loss.
+    Dull metal.  `biot` is asked for so that a hub which is not of one temperature throughout has no such loss.
     A draught, tongs and a cold bench take more.  Source: physics.heating (Churchill and Chu, Stefan-Boltzmann).
     """
+    return _loss(floor, join, pair, planned, op, DULL)
+
+
+def carry_loss_bright(floor: Floor, join: Join, pair: Pair, planned: float, op: int) -> float | Open | None:
+    """As `carry_loss`, of bright machined metal, which radiates less [K]: between the two lies what is lost.
+
+    Source: physics.heating.
+    """
+    return _loss(floor, join, pair, planned, op, BRIGHT)
+
+
+def _loss(floor: Floor, join: Join, pair: Pair, planned: float, op: int, emissivity: float) -> float | Open | None:
     if join.by != "shrink":
         return None
     if join.heat is None or join.heat.carry is None:
         return Open((f"setups.{op}.join.heat.carry",))
     room = floor.loaded.job.room
-    cooled = cooled_temperature(ring_of(pair), start=planned, seconds=join.heat.carry, air=room)
+    cooled = cooled_temperature(ring_of(pair, emissivity), start=planned, seconds=join.heat.carry, air=room)
     return max(planned - cooled, 0.0)
 
 
-def at_shaft(planned: float, loss: float) -> float:
-    """Least heat the hub may still have as it goes over the shaft [degC]: planned - oven error - loss. Source: arithmetic."""
-    return lowest_hub_temperature(planned, oven_error=0.0, carry_loss=loss)
+def at_shaft(floor: Floor, join: Join, planned: float | None, loss: float | None) -> float | None:
+    """Least heat the hub may still have as it goes over the shaft [degC]: planned - oven error - loss. Source: arithmetic.
+
+    Where nothing heats the hub it has the room's temperature, or what is stated if that is colder.
+    """
+    if join.by != "shrink":
+        return None
+    if planned is None:
+        return unheated(join, floor.loaded.job.room)
+    return None if loss is None else lowest_hub_temperature(planned, oven_error=0.0, carry_loss=loss)
 
 
 def spare(at_shaft: float, needed: float) -> float | None:
@@ -77,53 +104,83 @@ def spare(at_shaft: float, needed: float) -> float | None:
     return at_shaft - needed if at_shaft >= needed else None
 
 
-def window(floor: Floor, join: Join, pair: Pair, sizes: JointSizes, at_shaft: float, needed: float) -> float | None:
+def unheated(join: Join, room: float) -> float:
+    """Temperature of a hub that nothing heats [degC]: the room's, or as stated where it is colder. Source: the job file."""
+    return min(join.heat.hub, room) if join.heat is not None and join.heat.hub is not None else room
+
+
+def _cold_alone(floor: Floor, join: Join) -> bool:
+    return join.heat is not None and join.heat.by_cold_alone(floor.loaded.job.room)
+
+
+def window(
+    floor: Floor, join: Join, pair: Pair, sizes: JointSizes, at_shaft: float, needed: float, shaft_at: float, op: int
+) -> float | Open | None:
     """Time over the shaft until the hub may bite, nothing touching [s]; None where it is too cold to go on at all.
 
-    Until three tenths of the play are left.  Source: conduction through the gap, physics.heating; the share ours.
+    Until three tenths of the play are left, while hub and shaft exchange heat.  The shaft is as cold as it can be.
+    Source: conduction through the gap, physics.carrying; the share ours.
     """
     if at_shaft <= needed:
         return None
+    seat = seat_of(floor, join, DULL)
+    if seat is None or isinstance(seat, Open):
+        return seat
+    coldest = shaft_at
+    if join.heat is not None and join.heat.chills(floor.loaded.job.room):
+        start = out_of_the_cold(join, op, -1.0)
+        if isinstance(start, Open):
+            return start
+        coldest = float(str(start.value))
     play = joining_play(sizes.nominal)
-    closes = pair.hub.heating.high * pair.diameter  # what the bore closes for each kelvin, at most
-    bites = needed - (1.0 - LEFT_WHEN_IT_GRIPS) * play / closes
-    shaft = join.heat.shaft if join.heat is not None and join.heat.shaft is not None else floor.loaded.job.room
-    length = math.fsum(s.length for s in pair.sections)
-    return seating_time(
-        ring_of(pair), hub_temperature=at_shaft, shaft_temperature=shaft, until=bites, gap=play / 2.0, length=length
+    grows = pair.hub.heating.high  # what the bore closes for each kelvin, at most
+    hub = ring_of(pair)
+    return time_to_close(
+        hub,
+        replace(seat, length=hub.length),
+        closes=(1.0 - LEFT_WHEN_IT_GRIPS) * play + grows * pair.diameter * (at_shaft - needed),
+        apart=at_shaft - coldest,
+        gap=play / 2.0,
+        expansions=(grows, contraction(floor, join, coldest)),
     )
 
 
-def bites_at(floor: Floor, join: Join, needed: float, sizes: JointSizes) -> float:
+def bites_at(floor: Floor, join: Join, needed: float, sizes: JointSizes) -> float | None:
     """Temperature of the hub at which the tightest pair has no play left [degC]: what is needed less what the play takes.
 
-    T = needed - play/(alpha_A D), hub expansion high, so that it is told early.  Source: physics.heating.
+    T = needed - play/(alpha_A D), hub expansion high, so that it is told early.  None where the hub cannot come to it, as
+    the room is warmer; what a chilled shaft gains meanwhile is in `heat.carry_until_bite`.  Source: physics.heating.
     """
+    if _cold_alone(floor, join):
+        return None
     hub = material_of(floor, floor.loaded.ref(join.outer).part)
     assert not isinstance(hub, Open)  # `needed` has asked for it
-    return needed - joining_play(sizes.nominal) / (hub.heating.high * sizes.nominal)
+    bites = needed - joining_play(sizes.nominal) / (hub.heating.high * sizes.nominal)
+    return bites if bites > floor.loaded.job.room else None
 
 
-def go_gauge(floor: Floor, join: Join, sizes: JointSizes, needed: float) -> float:
+def go_gauge(floor: Floor, join: Join, sizes: JointSizes, needed: float, shaft_at: float) -> float | None:
     """Gauge that has to enter the hot bore before the hub is lifted [mm]: largest journal, as warm as it is, and the play.
 
-    `needed` is asked for so that only a hub that is heated has one.  Source: shop practice of trying a preset gauge.
+    Rounded up to a micrometre (a tenth of a thou), so that the printed size does it.
+    `needed` is asked for so that only a joint that is shrunk has one; None where nothing heats the hub.
+    Source: shop practice of trying a preset gauge.
     """
-    shaft = material_of(floor, floor.loaded.ref(join.inner).part)
-    assert not isinstance(shaft, Open)  # `needed` has asked for it
-    at = join.heat.shaft if join.heat is not None and join.heat.shaft is not None else floor.loaded.job.room
-    grown = expansion_for("joining", "shaft", shaft, temperature=at).value * sizes.nominal * (at - 20.0)
-    return sizes.journal_high + grown + joining_play(sizes.nominal)
+    if _cold_alone(floor, join):
+        return None
+    grown = contraction(floor, join, shaft_at) * sizes.nominal * (shaft_at - REFERENCE_TEMPERATURE)
+    step = GAUGE_STEP[floor.loaded.job.units]
+    return math.ceil((sizes.journal_high + grown + joining_play(sizes.nominal)) / step - 1e-6) * step
 
 
 def soak(join: Join, pair: Pair) -> float | None:
-    """Time in the oven until the hub is hot through [s]: three minutes for each mm of its thickest wall; None elsewhere.
+    """Time in oven or oil bath until the hub is hot through [s], by its thickest wall; None for other sources of heat.
 
-    Source: instructions for heating coupling hubs in an oven (excerpt opened).
+    An oven takes three minutes for each mm, a bath of oil a good minute.
+    Source: instructions for heating coupling hubs in an oven, shop advice for bearings in oil (excerpts opened).
     """
-    if join.heat is None or join.heat.by != "oven":
-        return None
-    return SOAK_PER_MM * max((s.outside - pair.diameter) / 2.0 for s in pair.sections)
+    per_mm = {"oven": SOAK_PER_MM, "oil-bath": SOAK_IN_OIL_PER_MM}.get(join.heat.by or "") if join.heat else None
+    return per_mm * max((s.outside - pair.diameter) / 2.0 for s in pair.sections) if per_mm is not None else None
 
 
 def gap_at_shoulder(join: Join, pair: Pair, most: float) -> float | None:
@@ -141,6 +198,7 @@ def gap_at_shoulder(join: Join, pair: Pair, most: float) -> float | None:
 
 _HERE = {"floor": "route.floor", "join": ":"}
 _PAIR = {"pair": "fit.pair"}
+_NEEDED, _SHAFT = {"needed": "heat.needed"}, {"shaft_at": "heat.shaft_at"}
 
 HEAT = (
     Quantity(
@@ -153,13 +211,23 @@ HEAT = (
         "heat lost on the way to the shaft",
     ),
     Quantity(
+        "heat.carry_loss_bright",
+        "join",
+        "K",
+        1,
+        carry_loss_bright,
+        {**_HERE, **_PAIR, "planned": "heat.planned_low", "op": "@op"},
+        "heat lost on the way to the shaft by bright metal",
+    ),
+    Quantity(
         "heat.at_shaft",
         "join",
         "degC",
         0,
         at_shaft,
-        {"planned": "heat.planned_low", "loss": "heat.carry_loss"},
+        {**_HERE, "planned": "heat.planned_low", "loss": "heat.carry_loss"},
         "least heat the hub still has at the shaft",
+        {"planned": None, "loss": None},
     ),
     Quantity(
         "heat.spare",
@@ -176,7 +244,7 @@ HEAT = (
         "s",
         0,
         window,
-        {**_HERE, **_PAIR, "sizes": "fit.sizes", "at_shaft": "heat.at_shaft", "needed": "heat.needed"},
+        {**_HERE, **_PAIR, "sizes": "fit.sizes", "at_shaft": "heat.at_shaft", **_NEEDED, **_SHAFT, "op": "@op"},
         "time over the shaft until the hub may bite",
     ),
     Quantity(
@@ -194,10 +262,12 @@ HEAT = (
         "mm",
         3,
         go_gauge,
-        {**_HERE, "sizes": "fit.sizes", "needed": "heat.needed"},
+        {**_HERE, "sizes": "fit.sizes", **_NEEDED, **_SHAFT},
         "gauge that has to enter the hot bore",
     ),
-    Quantity("heat.soak", "join", "min", 0, soak, {"join": ":", **_PAIR}, "time in the oven until it is hot through"),
+    Quantity(
+        "heat.soak", "join", "min", 0, soak, {"join": ":", **_PAIR}, "time in oven or oil until it is hot through"
+    ),
     Quantity(
         "heat.shoulder_gap",
         "join",

@@ -56,6 +56,8 @@ def limit_of(floor: Floor, pair: Pair) -> tuple[float, str] | Open:
     """(interference on diameter at which the weaker part leaves its elastic range [mm], which part and by what criterion).
 
     Ductile: p = R_e (1 - Q^2)/sqrt(3); brittle hub: tangential stress R_m/3; the least over all sections.
+    Sections are taken as slices of their own: by finite elements a collar narrower than its wall may see 13 % more (von
+    Mises), at its bore 33 % more round it, than its slice says.
     Source: DIN 7190 (from memory), physics.interference.
     """
     hub, shaft = strength_of(floor, pair.hub_part, pair.hub), strength_of(floor, pair.shaft_part, pair.shaft)

@@ -5,6 +5,7 @@ from __future__ import annotations
 from setupcheck.quantities import holds, judged
 from setupcheck.quantities.advice import ADVICE
 from setupcheck.quantities.book import Quantity
+from setupcheck.quantities.chilling import CHILLING
 from setupcheck.quantities.choosing import CHOOSING
 from setupcheck.quantities.clamping import CLAMP
 from setupcheck.quantities.cutter_shape import SHAPE
@@ -12,11 +13,13 @@ from setupcheck.quantities.cutting import CUTTING
 from setupcheck.quantities.division import DIVIDE
 from setupcheck.quantities.growing import GROWING
 from setupcheck.quantities.head_setting import HEAD
+from setupcheck.quantities.heat_checks import HEAT_CHECKS
 from setupcheck.quantities.joining import JOINING
 from setupcheck.quantities.joint_heat import HEAT
 from setupcheck.quantities.joint_states import IN_STATES
 from setupcheck.quantities.measuring import MEASURE
 from setupcheck.quantities.meshing import MESHING
+from setupcheck.quantities.opening import OPENING
 from setupcheck.quantities.placing import PLACE
 from setupcheck.quantities.pressing import PRESSING
 from setupcheck.quantities.stated import STATED
@@ -260,8 +263,11 @@ TABLES: tuple[Quantity, ...] = (
     *GROWING,
     *CHOOSING,
     *PRESSING,
+    *CHILLING,
     *STATED,
     *HEAT,
+    *OPENING,
+    *HEAT_CHECKS,
     *THROUGH,
     *CUTTING,
     *SHAPE,

@@ -16,11 +16,20 @@ STEPS: tuple[tuple[str, ...], ...] = (
         "The tightest pair needs {heat.needed} as it goes over the shaft; the hub's material stands {heat.cap}.",
         "The tightest pair needs {heat.needed} as it goes over the shaft.",
     ),
-    ("Leave it in the oven for {heat.soak}, so that it is hot through.",),
+    (
+        "Heat opens {heat.opens_by_heat} and cold {heat.opens_by_cold}, {heat.must_open} are needed; the shaft gains "
+        "{heat.shaft_gain} on its way and comes at {heat.shaft_at}.",
+    ),
+    ("Let it soak for {heat.soak}, so that it is hot through.",),
     ("Try a gauge of {heat.go_gauge} in the hot bore; lift the hub only when it enters.",),
-    ("Carried as planned, the hub still has {heat.at_shaft} at the shaft.",),
+    (
+        "Carried as planned, the hub still has {heat.at_shaft} at the shaft. In still air the wanted play lasts "
+        "{heat.carry_allowed}, and after {heat.carry_until_bite} the tightest pair has none.",
+        "Carried as planned, the hub still has {heat.at_shaft} at the shaft.",
+    ),
     (
         "Over the shaft there are {heat.window} until it may bite, while nothing touches; it bites at {heat.bites_at}.",
+        "Over the shaft there are {heat.window} until it may bite, while nothing touches.",
         "The tightest pair bites at {heat.bites_at}.",
     ),
     (

@@ -49,7 +49,7 @@ BENEATH: tuple[tuple[str, ...], ...] = (
 )
 """Lines under the table, each with its shorter forms: the first of them whose numbers are all known is said."""
 PLAY = "{fit.said}, on diameter: no interference, so no pressure and nothing held"
-FITTING = {"shrink": "shrunk", "press": "pressed"}
+FITTING = {"shrink": "{0} shrunk on {1}", "press": "{1} pressed into {0}"}
 
 
 def fitted(found: Review) -> Iterator[tuple[Scope, Join]]:
@@ -85,7 +85,7 @@ def joints_as_data(found: Review) -> list[dict[str, object]]:
 def _table(found: Review, scope: Scope, join: Join) -> Iterator[str]:
     outer, inner = found.loaded.ref(join.outer).part, found.loaded.ref(join.inner).part
     yield from wrap(
-        f"JOINT, op {scope.op}: {outer} on {inner}, {FITTING[join.by]}; grip on diameter, thick rings in plane stress",
+        f"JOINT, op {scope.op}: {FITTING[join.by].format(outer, inner)}; grip on diameter, thick rings in plane stress",
         rest="  ",
     )
     if has_play(found, scope):

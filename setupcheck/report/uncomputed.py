@@ -252,6 +252,14 @@ def _setup(loaded: LoadedJob, looked: _Looked, setup: Setup) -> Iterator[Uncompu
 
 
 def _fitted(loaded: LoadedJob) -> set[tuple[str, str]]:
-    """Surfaces whose size limits are held against each other, because they are put together."""
-    refs = [loaded.ref(text) for s in loaded.job.setups if s.join is not None for text in (s.join.outer, s.join.inner)]
-    return {(ref.part, ref.surface) for ref in refs}
+    """Surfaces whose size limits are looked at: put together, or the hole of a part that a joint presses together."""
+    joins = [s.join for s in loaded.job.setups if s.join is not None]
+    refs = [loaded.ref(text) for join in joins for text in (join.outer, join.inner)]
+    pressed = {loaded.ref(join.inner).part for join in joins if join.by in FITTED}
+    holes = {
+        (name, surface)
+        for name in pressed
+        for surface, node in loaded.job.parts[name].surfaces.items()
+        if isinstance(node, Round) and node.kind == "bore"
+    }
+    return {(ref.part, ref.surface) for ref in refs} | holes

@@ -33,6 +33,7 @@ FACTS: Mapping[str, str] = {
     "join.by": "shrink, press, slide, taper, screw, bond",
     "join.joint": "degreased or oiled",
     "join.brittle": "true when hub or shaft is of grey iron or hardened steel",
+    "join.may_trap": "true when the hub may trap, or the shaft has a bore, a thread or holes",
     "hub.brittle": "true when the hub is",
     "hub.may_trap": "true when the hub's bore ends inside it, or it has threads or holes",
     "shaft.material_family": "family of the part that goes in",

@@ -77,7 +77,9 @@ def excerpts() -> dict[str, str]:
     return {
         "shimmed": "\n".join([*head, "", "FINDINGS", *shimmed[first:after], "  …"]),
         "good": "\n".join([*good[:2], "", *good[asked : asked + 9], "  …", "", *good[dial : dial + 4], "  …"]),
-        "joint": "\n".join(good[next(i for i, g in enumerate(good) if g.startswith("JOINT")) : good.index("WORKED OUT") - 1]),
+        "joint": "\n".join(
+            good[next(i for i, g in enumerate(good) if g.startswith("JOINT")) : good.index("WORKED OUT") - 1]
+        ),
         "worked": "\n".join(good[good.index("WORKED OUT") : good.index("", good.index("WORKED OUT"))]),
         "slips": slips(),
         "mistakes": mistakes(),

@@ -70,7 +70,7 @@ def test_a_tilt_that_cannot_be_told_is_open_with_the_key_to_fill(gone: str, key:
         pytest.param(
             "diameter: 32.030 ±0.003",
             "diameter: 32.045 ±0.003",
-            {"FIT-004", "HEAT-001"},
+            {"FIT-004", "HEAT-001", "HEAT-007"},
             id="more interference than the hub stands",
         ),
         pytest.param("torque: 40 N m}", "torque: 90 N m}", {"FIT-003"}, id="more torque than the joint holds"),

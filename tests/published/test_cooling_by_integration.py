@@ -14,6 +14,7 @@ from dataclasses import replace
 import pytest
 from scipy.integrate import solve_ivp
 
+from setupcheck.physics.carrying import time_to_close
 from setupcheck.physics.heating import (
     AIR_CONDUCTIVITY,
     BRIGHT,
@@ -21,7 +22,6 @@ from setupcheck.physics.heating import (
     Ring,
     carry_time,
     cooled_temperature,
-    seating_time,
 )
 
 SIGMA = 5.670374e-8
@@ -98,10 +98,12 @@ def test_time_until_a_temperature(name: str, emissivity: float, start: float, un
 @pytest.mark.parametrize("name", [name for name in RINGS if RINGS[name].bore])
 @pytest.mark.parametrize(("hot", "until", "gap"), [(120.0, 115.0, 0.05), (200.0, 60.0, 0.015)])
 def test_time_over_the_cold_shaft(name: str, hot: float, until: float, gap: float) -> None:
-    """m c dT/dt = -k (pi D L / s) (T - T_shaft): conduction through air of thickness s, shaft kept at 20 degC."""
-    ring, seat = RINGS[name], 0.8 * RINGS[name].length
+    """m c dT/dt = -k (pi D L / s) (T - T_shaft): conduction through air of thickness s, the shaft so heavy that it stays at 20
+    degC. Both bodies moving stand in tests/unit/physics/test_carrying."""
+    ring, grows = RINGS[name], 18e-6
+    heavy = Ring(bore=0, outside=ring.bore, length=ring.length, density=1e16, specific_heat=465, emissivity=1.0)
     mass = math.pi / 4.0 * (ring.outside**2 - ring.bore**2) * ring.length * 1e-9 * ring.density
-    through = AIR_CONDUCTIVITY * math.pi * ring.bore * 1e-3 * seat * 1e-3 / (gap * 1e-3)
+    through = AIR_CONDUCTIVITY * math.pi * ring.bore * 1e-3 * ring.length * 1e-3 / (gap * 1e-3)
     answer = solve_ivp(
         lambda _, y: -through * (y - 20.0) / (mass * ring.specific_heat),
         (0.0, 1e4),
@@ -111,5 +113,6 @@ def test_time_over_the_cold_shaft(name: str, hot: float, until: float, gap: floa
         atol=1e-9,
         events=lambda _, y: y[0] - until,
     )
-    told = seating_time(ring, hub_temperature=hot, shaft_temperature=20, until=until, gap=gap, length=seat)
+    closes = grows * ring.bore * (hot - until)
+    told = time_to_close(ring, heavy, closes=closes, apart=hot - 20.0, gap=gap, expansions=(grows, 12e-6))
     assert answer.t_events[0][0] == pytest.approx(told, rel=1e-3)

@@ -201,7 +201,11 @@ OPERATIONS = {
         {"setup.kind": "join", "join.by": "shrink", "heat.by": "oven", "heat.cold_by": "liquid-nitrogen",
          "heat.deep_cold": True, "shaft.material_family": "steel"},
         ["glove-heat-rating", "liquid-nitrogen-room", "cold-brittle-steel", "hot-part", "cold-part-and-frost",
-         "shrink-seized-halfway"]),
+         "liquid-air-and-oil", "shrink-seized-halfway"]),
+    "shrinking a blind hub onto a shaft from dry ice, by cold alone": (
+        {"setup.kind": "join", "join.by": "shrink", "heat.by": None, "heat.hot": False, "heat.cold_by": "dry-ice",
+         "hub.may_trap": True, "join.may_trap": True, "heat.deep_cold": True, "shaft.material_family": "steel"},
+        ["sealed-cavity-cold", "dry-ice-room", "cold-brittle-steel", "cold-part-and-frost", "shrink-seized-halfway"]),
     "pressing on": ({"setup.kind": "join", "join.by": "press"}, ["press-force", "press-stand-clear"]),
     "pressing a hardened hub on": (
         {"setup.kind": "join", "join.by": "press", "hub.brittle": True, "join.brittle": True},

@@ -55,6 +55,10 @@ READ = [
     ("duration", "12 s", 12.0),
     ("duration", "5 min", 300.0),
     ("duration", "2 h", 7200.0),
+    ("volume", "40 m3", 40.0),
+    ("volume", "40 m\u00b3", 40.0),
+    ("volume", "5 l", 0.005),
+    ("volume", "1000 ft3", 28.316846592),
     ("fraction", "95 %", 0.95),
     ("fraction", "95%", 0.95),
     ("fraction", "0.95", 0.95),
@@ -129,6 +133,10 @@ CASE = "capital and small letters matter"
         ("duration", "5 m", "'5 m' is not a time. The unit m is the metre: write min for minutes"),
         ("duration", "5'", "'5'' is not a time. Minutes of arc stand in the place of a time: write min"),
         ("duration", 12, "12 has no unit, so it is not a time. Write its unit too: s, min or h"),
+        ("volume", 40, "40 has no unit, so it is not a volume. Write its unit too: m3, l or ft3"),
+        ("volume", "40 m2", "'40 m2' is not a volume. The unit m2 is an area: write the volume in m3"),
+        ("volume", "2 gal", "'2 gal' is not a volume. A gallon is 3.8 l in one country and 4.5 l in another: write l"),
+        ("volume", "40 m", "'40 m' is a length, not a volume. Write a volume, as in 40 m3"),
         ("duration", "1:30", "'1:30' has a colon in its number. Write it as in 12 s"),
         ("fraction", 95, "95 is more than the whole. Write 95 %, or 0.95 as a share of one"),
         ("fraction", "120 %", "'120 %' is more than the whole. Write 100 % or less"),
@@ -205,6 +213,7 @@ def test_a_roughness_without_its_figure_or_unit_is_refused(text, message):
         ("±9 degF", 5.0, "temperature_difference"),
         ("110 MPa", 110.0, "pressure"),
         ("12 s", 12.0, "duration"),
+        ("5 l", 0.005, "volume"),
         ("2 kg", 2.0, "mass"),
         ("1400 1/min", 1400.0, "speed"),
         (3, 3.0, "number"),
@@ -255,9 +264,9 @@ def angle_of(text):
 @given(
     st.sampled_from(
         ["temperature", "temperature_difference", "torque", "force", "pressure", "duration", "fraction", "mass",
-         "speed", "roughness", "amount", "number"]
+         "speed", "volume", "roughness", "amount", "number"]
     ),
-    st.text(alphabet="0123456789.,+-±/ '\"°degCFKNmulbfthiRaz%\u00b2", max_size=20),
+    st.text(alphabet="0123456789.,+-±/ '\"°degCFKNmulbfthiRaz%\u00b2\u00b3", max_size=20),
 )  # fmt: skip
 def test_any_text_is_read_or_refused_in_words(kind, text):
     try:

@@ -34,6 +34,8 @@ READERS = {
     "h": notation.duration,
     "kg": notation.mass,
     "rpm": notation.speed,
+    "m3": notation.volume,
+    "l": notation.volume,
     "%": notation.fraction,
     "1": notation.number,
 }

@@ -13,7 +13,7 @@ import pytest
 from hypothesis import assume, given, settings
 from hypothesis import strategies as st
 
-from setupcheck.physics import heating
+from setupcheck.physics import carrying, heating
 from setupcheck.physics import interference as fits
 from setupcheck.physics.interference import Joint
 
@@ -263,16 +263,19 @@ def test_a_carry_in_two_stages_is_the_carry_in_one(
 
 
 @drawn
-@given(RINGS, st.floats(60, 400), st.floats(0.02, 0.98), st.floats(0.02, 0.98), st.floats(-196, 40))
+@given(RINGS, RINGS, st.floats(20, 400), st.floats(0.02, 0.9), st.floats(0.02, 0.9))
 def test_time_over_the_shaft_adds_up_and_goes_with_the_gap(
-    ring: heating.Ring, hot: float, one: float, other: float, cold: float
+    ring: heating.Ring, other: heating.Ring, apart: float, one: float, share: float
 ) -> None:
-    low, high = (cold + share * (hot - cold) for share in sorted((one, other)))
+    shaft = replace(other, bore=0.0, outside=ring.bore, length=ring.length)
+    lumps = 1.0 / ring.heat_capacity + 1.0 / shaft.heat_capacity
+    for_a_kelvin = ring.bore * (18e-6 / ring.heat_capacity + 12e-6 / shaft.heat_capacity) / lumps
+    whole = one * apart * for_a_kelvin
+    first = share * whole
 
-    def time(start: float, until: float, gap: float = 0.05) -> float:
-        return heating.seating_time(
-            ring, hub_temperature=start, shaft_temperature=cold, until=until, gap=gap, length=ring.length
-        )
+    def time(closes: float, kelvin: float, gap: float = 0.05) -> float:
+        return carrying.time_to_close(ring, shaft, closes=closes, apart=kelvin, gap=gap, expansions=(18e-6, 12e-6))
 
-    assert time(hot, low) == pytest.approx(time(hot, high) + time(high, low), rel=1e-9)
-    assert 2.0 * time(hot, low) == pytest.approx(time(hot, low, gap=0.1), rel=1e-9)
+    after = apart - first / for_a_kelvin
+    assert time(whole, apart) == pytest.approx(time(first, apart) + time(whole - first, after), rel=1e-9)
+    assert 2.0 * time(whole, apart) == pytest.approx(time(whole, apart, gap=0.1), rel=1e-9)

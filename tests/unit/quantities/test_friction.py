@@ -40,7 +40,7 @@ def test_a_shrunk_joint_never_holds_less_than_a_pressed_one_and_a_dry_one_than_a
 
 
 def test_a_pair_without_a_row_has_no_friction() -> None:
-    assert friction(hub="steel", shaft="copper-alloy", by="shrink", joint="degreased") is None
+    assert friction(hub="copper-alloy", shaft="aluminium", by="shrink", joint="degreased") is None
 
 
 def test_the_table_is_used_for_holding_low_and_for_pressing_in_high() -> None:
@@ -85,3 +85,10 @@ def test_a_damaged_table_is_one_clear_message(monkeypatch: pytest.MonkeyPatch, t
             table()
     finally:
         table.cache_clear()
+
+
+def test_two_materials_rub_alike_whichever_is_outside() -> None:
+    bush = friction(hub="steel", shaft="copper-alloy", by="press", joint="degreased")
+    assert bush is not None
+    assert bush == friction(hub="copper-alloy", shaft="steel", by="press", joint="degreased")
+    assert friction(hub="aluminium", shaft="copper-alloy", by="press", joint="oiled") is None

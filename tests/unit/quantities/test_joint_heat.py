@@ -6,7 +6,8 @@ import math
 
 import pytest
 
-from setupcheck.physics.heating import DULL, Ring, carry_time, cooled_temperature, joining_play, seating_time
+from setupcheck.physics.carrying import time_to_close
+from setupcheck.physics.heating import DULL, Ring, carry_time, cooled_temperature, joining_play
 from setupcheck.quantities.book import Open
 
 from .joint_text import answer, changed, finding, number, reviewed
@@ -57,15 +58,19 @@ def test_the_window_ends_where_three_tenths_of_the_play_are_left() -> None:
     text = changed()
     at_shaft, needed = number(text, "heat.at_shaft"), number(text, "heat.needed")
     play = joining_play(60.0)
-    bites = needed - 0.7 * play / (18.5e-6 * 60.0)
-    ours = seating_time(
-        RING, hub_temperature=at_shaft, shaft_temperature=20.0, until=bites, gap=play / 2.0, length=30.0
+    ours = time_to_close(
+        RING,
+        Ring(bore=20.0, outside=60.0, length=30.0, density=7830.0, specific_heat=468.0, emissivity=DULL),
+        closes=0.7 * play + 18.5e-6 * 60.0 * (at_shaft - needed),
+        apart=at_shaft - 20.0,
+        gap=play / 2.0,
+        expansions=(18.5e-6, 12.7e-6),
     )
     assert ours == pytest.approx(number(text, "heat.window"))
     # a hub that cannot go on at all has no window
     assert answer(changed(("hub: 190 degC", "hub: 100 degC")), "heat.window") is None
     # a chilled shaft needs less heat and takes it sooner away
-    chilled = changed(("hub: 190 degC", "hub: 190 degC, shaft: -70 degC"))
+    chilled = changed(("hub: 190 degC", "hub: 190 degC, shaft: -70 degC, cold_error: 5 K"))
     assert number(chilled, "heat.needed") < needed
 
 

@@ -8,7 +8,7 @@ import json
 import pytest
 from pydantic import BaseModel
 
-from setupcheck.jobfile import models, properties, setups
+from setupcheck.jobfile import heating, models, properties, setups
 from setupcheck.report.json import as_json
 from setupcheck.report.text import as_text
 from setupcheck.report.uncomputed import NOT_LOOKED_AT, in_lines, uncomputed
@@ -52,7 +52,7 @@ READ = {
     "Touched": "surface measured uncertainty at_most tool",
     "Cut": "passes to state leave_on_diameter leave_on_radius leave error removes from_surface finishing_cut form cutter each "
     "spindle_to_axis tool_change_after",
-    "Heat": "hub shaft by oven_error read_by carry cold_by",
+    "Heat": "hub shaft by oven_error read_by carry cold_by cold_error gauge flash_point room_volume coolant",
     "Join": "outer inner by square fit_error clearance rests stop mounted_at",
     "Setup": "op note machine part looks_at_tool keeps hold head divide cut join",
     "Job": "setupcheck title job revision units room confidence parts worm mesh cutters machines setups place require "
@@ -63,7 +63,7 @@ READ = {
 
 RECORDS = {
     record.__name__: record  # not the name it is found under: some have a second one
-    for module in (models, properties, setups)
+    for module in (models, properties, setups, heating)
     for record in vars(module).values()
     if inspect.isclass(record)
     and issubclass(record, BaseModel)
@@ -111,7 +111,7 @@ def test_properties_that_nothing_computes_with_are_told_with_their_units() -> No
 def test_of_a_pressed_joint_only_the_heat_is_told() -> None:
     pressed = " ".join(told(changed(WHEEL, ("by: shrink", "by: press"))))
     assert "grips first at the shoulder-end" in pressed
-    assert "heat (hub 175 degC, by oven, oven error 10 degC, carry 12 s)" in pressed
+    assert "heat (hub 175 degC, by oven, oven error 10 degC, carry 12 s, gauge 32.07 mm)" in pressed
     assert "must carry" not in pressed
 
 

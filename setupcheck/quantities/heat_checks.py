@@ -1,0 +1,270 @@
+"""What else a plan of heat and cold is asked: the carry, the gauge, the flame, the oil, the gas in the room. degC, K, s, mm."""
+
+from __future__ import annotations
+
+import math
+
+from setupcheck.jobfile.setups import Join
+from setupcheck.notation import show
+from setupcheck.physics.cold_gas import carbon_dioxide, dry_ice_at_most, litres_at_most, oxygen_left
+from setupcheck.quantities.book import Open, Quantity
+from setupcheck.quantities.contents import LOW_TEMPER, breaks
+from setupcheck.quantities.joining import JointSizes
+from setupcheck.quantities.joint_heat import GAUGE_STEP
+from setupcheck.quantities.material_data import UnknownMaterial, material
+from setupcheck.quantities.shop import Floor
+from setupcheck.quantities.stuff import cap_of, material_of
+
+LEAST_OXYGEN = 0.195
+"""Share of oxygen below which air counts as deficient. Source: OSHA letter (excerpt opened)."""
+LONG_CARBON_DIOXIDE, SHORT_CARBON_DIOXIDE = 0.005, 0.03
+"""Shares of carbon dioxide for eight hours and for 15 minutes. Source: NIOSH pocket guide with OSHA's limit (excerpt opened)."""
+_TENTH = 0.1
+LITRE = 1e-3
+"""m3. The file's amounts of liquid are kept in m3."""
+PROVED = {
+    "gauge": "a gauge tried in its bore",
+    "contact-probe": "a reading by contact probe",
+    "crayon": "a reading by crayon",
+    "infrared": "an infrared reading alone",
+    "nothing": "no gauge and no reading",
+}
+"""What a hub is lifted with, in words."""
+_SPOILT = {"copper-alloy": "a copper alloy", "cast-iron": "cast iron", "aluminium": "aluminium"}
+
+
+def carry(join: Join, op: int) -> float | Open | None:
+    """Time from oven or cold to the joint, as stated [s]. Source: the job file."""
+    if join.by != "shrink":
+        return None
+    if join.heat is None or join.heat.carry is None:
+        return Open((f"setups.{op}.join.heat.carry",))
+    return join.heat.carry
+
+
+def gauge(join: Join) -> float | None:
+    """Size of the gauge that is tried in the hot bore, as stated [mm]. Source: the job file."""
+    return join.heat.gauge if join.by == "shrink" and join.heat is not None else None
+
+
+def proved(floor: Floor, join: Join, op: int) -> str | Open | None:
+    """What a hot hub is lifted with, one of PROVED; None where nothing heats it. A gauge counts for more than a reading.
+
+    Source: the job file.
+    """
+    heat = join.heat
+    if join.by != "shrink" or (heat is not None and heat.by_cold_alone(floor.loaded.job.room)):
+        return None
+    if heat is None or heat.hub is None:
+        return Open((f"setups.{op}.join.heat.hub",))
+    return PROVED["gauge" if heat.gauge is not None else heat.read_by or "nothing"]
+
+
+def under_the_flame(floor: Floor, join: Join) -> str | Open | None:
+    """What a flame heats: plain steel, hardened steel, cast iron, a copper alloy, …; None where no flame does.
+
+    Hardened: steel that splinters or stands no more than 150 degC in one heating (quantities.contents).
+    Source: the job file, rules/data/materials.yaml.
+    """
+    if join.by != "shrink" or join.heat is None or join.heat.by != "flame":
+        return None
+    part = floor.loaded.ref(join.outer).part
+    called = floor.loaded.job.parts[part].material
+    if called is None:
+        return Open((f"parts.{part}.material",))
+    found = material(called)
+    if isinstance(found, UnknownMaterial):
+        return "of a material that is not in the list"
+    stated = material_of(floor, part)
+    if found.family == "steel" and not isinstance(stated, Open):
+        hardened = breaks(stated) or cap_of(floor, part, stated) <= LOW_TEMPER
+        return "hardened steel" if hardened else "plain steel"
+    return _SPOILT.get(found.family, "of no plain steel")
+
+
+def flame_evens(flame: str) -> str | None:
+    """How evenly a flame heats plain steel: from one side; None for what no flame should touch. Source: trade practice."""
+    return "from one side" if flame == "plain steel" else None
+
+
+def stated_shaft(join: Join) -> float | None:
+    """Temperature of the shaft as stated [degC]. Source: the job file."""
+    return join.heat.shaft if join.by == "shrink" and join.heat is not None else None
+
+
+def room(floor: Floor, join: Join) -> float | None:
+    """Temperature of the room, which parts have that nothing heats or chills [degC]. Source: the job file, else 20."""
+    return floor.loaded.job.room if join.by == "shrink" else None
+
+
+def flash_margin(join: Join, op: int, planned: float) -> float | Open | None:
+    """How far the hottest of an oil bath stays under its oil's flash point [K]; None for other sources of heat.
+
+    Flash point - planned heat - its error: two temperatures, so the answer is a difference and not a temperature.
+    Source: the job file; arithmetic.
+    """
+    if join.heat is None or join.heat.by != "oil-bath":
+        return None
+    if join.heat.flash_point is None:
+        return Open((f"setups.{op}.join.heat.flash_point",))
+    return join.heat.flash_point - planned
+
+
+def oxygen(join: Join, op: int) -> float | Open | None:
+    """Share of oxygen left once all the liquid nitrogen is gas in the closed room; None where none is used.
+
+    Source: physics.cold_gas.
+    """
+    found = _boils(join, op, "liquid-nitrogen")
+    return found if not isinstance(found, tuple) else oxygen_left(found[0], litres=found[1] / LITRE)
+
+
+def dry_ice_gas(join: Join, op: int) -> float | Open | None:
+    """Share of carbon dioxide once all the dry ice is gas in the closed room; None where none is used.
+
+    Source: physics.cold_gas.
+    """
+    found = _boils(join, op, "dry-ice")
+    return found if not isinstance(found, tuple) else carbon_dioxide(found[0], mass=found[1])
+
+
+def dry_ice_gas_long(share: float | None) -> float | None:
+    """The same share where it stays within the limit of 15 minutes; None beyond, where HEAT-013 speaks.
+
+    Source: physics.cold_gas.
+    """
+    return share if share is not None and share <= SHORT_CARBON_DIOXIDE else None
+
+
+def _boils(join: Join, op: int, what: str) -> tuple[float, float] | Open | None:
+    """Room [m3] and what boils off in it [m3 or kg], in any joint that is chilled so."""
+    heat, path = join.heat, f"setups.{op}.join.heat"
+    if heat is None or heat.cold_by != what:
+        return None
+    if heat.room_volume is None or heat.coolant is None:
+        keys = (("room_volume", heat.room_volume), ("coolant", heat.coolant))
+        return Open(tuple(f"{path}.{key}" for key, given in keys if given is None))
+    return heat.room_volume, heat.coolant.value
+
+
+def gas_advice(join: Join, op: int) -> str | None:
+    """How much may boil off in this room, and the room that all of it needs. Source: physics.cold_gas, turned round."""
+    heat, path = join.heat, f"setups.{op}.join.heat.coolant"
+    if heat is None or heat.room_volume is None or heat.coolant is None:
+        return None
+    volume, amount = heat.room_volume, heat.coolant.value
+    if heat.cold_by == "liquid-nitrogen":
+        most, amount, unit, stay = litres_at_most(volume, oxygen=LEAST_OXYGEN), amount / LITRE, "l", ""
+    else:
+        most, unit = dry_ice_at_most(volume, share=LONG_CARBON_DIOXIDE), "kg"
+        brief = dry_ice_at_most(volume, share=SHORT_CARBON_DIOXIDE)
+        stay = f" for a shift, {_down(brief)} kg for a quarter of an hour"
+    elsewhere = (
+        f"work in the open, or in a room of {math.ceil(volume * amount / most)} m3 or more, with an alarm for the gas"
+    )
+    if most < _TENTH:
+        return f"{elsewhere[:1].upper()}{elsewhere[1:]}."
+    return f"Bring no more than {_down(most)} {unit} into this room{stay} ({path}), or {elsewhere}."
+
+
+def _down(amount: float) -> str:
+    """An amount rounded down to a tenth, so that the printed one keeps the limit."""
+    return f"{math.floor(amount / _TENTH + 1e-9) * _TENTH:.1f}"
+
+
+def carry_advice(join: Join, op: int, allowed: float, spare: float | None, oven: str | None) -> str | None:
+    """In how many seconds the hub has to be at the shaft, or how much hotter to set it. Source: quantities.opening."""
+    path = f"setups.{op}.join.heat.carry"
+    most = show(math.floor(allowed), "s", 0)
+    first = f"Bring hub and shaft together within {most} ({path})"
+    if spare is not None and math.floor(spare) >= 1:
+        first = (
+            f"Bring hub and shaft together within {show(math.floor(spare), 's', 0)} ({path}; {most} at the very most)"
+        )
+    return f"{first}. With the way as it is: {oven}" if oven is not None else f"{first}."
+
+
+def gauge_advice(
+    floor: Floor, join: Join, op: int, gauge: float, go: float, sizes: JointSizes, opens: float | None
+) -> str:
+    """Size of the gauge for the hot bore, and the largest that the smallest bore takes in. Source: quantities.joint_heat.
+
+    gauge  is asked for so that only a joint with one has it
+    """
+    unit, digits = ("in", 4) if floor.loaded.job.units == "in" else ("mm", 3)
+    made = f"Make the gauge {show(go, unit, digits)}, the largest journal and the play (setups.{op}.join.heat.gauge)"
+    step = GAUGE_STEP[floor.loaded.job.units]
+    enters = math.floor((sizes.bore_low + opens) / step + 1e-6) * step if opens is not None else 0.0
+    if enters < go:
+        return f"{made}."
+    return f"{made}; as hot as planned, the smallest bore takes up to {show(enters, unit, digits)}."
+
+
+_JOIN, _OP = {"join": ":"}, {"op": "@op"}
+_HERE = {"floor": "route.floor", **_JOIN}
+
+HEAT_CHECKS = (
+    Quantity("heat.carry", "join", "s", 0, carry, {**_JOIN, **_OP}, "time from oven or cold to the joint"),
+    Quantity(
+        "heat.carry_advice",
+        "join",
+        "",
+        0,
+        carry_advice,
+        {
+            **_JOIN,
+            **_OP,
+            "allowed": "heat.carry_allowed",
+            "spare": "settled heat.carry_with_spare",
+            "oven": "settled heat.advice",
+        },
+        "how soon the hub has to be at the shaft",
+        {"spare": None, "oven": None},
+    ),
+    Quantity(
+        "heat.gauge_advice",
+        "join",
+        "",
+        0,
+        gauge_advice,
+        {
+            **_HERE,
+            **_OP,
+            "gauge": "heat.gauge",
+            "go": "heat.go_gauge",
+            "sizes": "fit.sizes",
+            "opens": "settled heat.opens_by_heat",
+        },
+        "size of the gauge for the hot bore, in words",
+        {"opens": None},
+    ),
+    Quantity("heat.gauge", "join", "mm", 3, gauge, _JOIN, "gauge that is tried in the hot bore"),
+    Quantity("heat.proved", "join", "", 0, proved, {**_HERE, **_OP}, "how the hot hub is proved"),
+    Quantity("heat.flame", "join", "", 0, under_the_flame, _HERE, "what a flame heats"),
+    Quantity("heat.flame_evens", "join", "", 0, flame_evens, {"flame": "heat.flame"}, "how evenly a flame heats"),
+    Quantity("heat.shaft", "join", "degC", 0, stated_shaft, _JOIN, "temperature of the shaft as stated"),
+    Quantity("heat.room", "join", "degC", 0, room, _HERE, "temperature of the room"),
+    Quantity(
+        "heat.flash_margin",
+        "join",
+        "K",
+        0,
+        flash_margin,
+        {**_JOIN, **_OP, "planned": "heat.planned_high"},
+        "how far the oil bath stays under its flash point",
+    ),
+    Quantity("heat.oxygen", "join", "%", 1, oxygen, {**_JOIN, **_OP}, "oxygen left when the nitrogen is gas"),
+    Quantity(
+        "heat.carbon_dioxide", "join", "%", 2, dry_ice_gas, {**_JOIN, **_OP}, "carbon dioxide when the dry ice is gas"
+    ),
+    Quantity(
+        "heat.carbon_dioxide_long",
+        "join",
+        "%",
+        2,
+        dry_ice_gas_long,
+        {"share": "settled heat.carbon_dioxide"},
+        "the same within the limit of 15 minutes",
+    ),
+    Quantity("heat.gas_advice", "join", "", 0, gas_advice, {**_JOIN, **_OP}, "how much may boil off in this room"),
+)
