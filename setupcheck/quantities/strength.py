@@ -200,16 +200,22 @@ def load_stated(join: Join, pair: Pair, op: int) -> str | Open:
     return "stated" if join.must_carry else Open((f"setups.{op}.join.must_carry",))
 
 
-def holds_to(pair: Pair, least: float, smoothing: float, friction: float, asked: float) -> float:
-    """Temperature of the whole joint up to which the loosest pair still holds what it must [degC]. Source: physics.heating."""
+def holds_to(pair: Pair, least: float, smoothing: float, friction: float, asked: float) -> float | None:
+    """Temperature of the whole joint up to which the loosest pair still holds what it must [degC]; None where it holds at any.
+
+    Source: physics.heating.
+    """
     unit = force_held(pair, 1.0, friction)  # for each mm of interference, as pressure is straight in it
     return _finite(
         holding_temperature(least - smoothing, needed=asked / unit, diameter=pair.diameter, **_expansions(pair))
     )
 
 
-def loosens_at(pair: Pair, least: float, smoothing: float) -> float:
-    """Temperature of the whole joint at which the loosest pair has no interference left [degC]. Source: physics.heating."""
+def loosens_at(pair: Pair, least: float, smoothing: float) -> float | None:
+    """Temperature of the whole joint at which the loosest pair has no interference left [degC]; None where none does that.
+
+    Source: physics.heating.
+    """
     return _finite(loosening_temperature(least - smoothing, diameter=pair.diameter, **_expansions(pair)))
 
 
@@ -234,11 +240,12 @@ def _expansions(pair: Pair) -> dict[str, float]:
     }
 
 
-def _finite(temperature: float) -> float:
-    if math.isfinite(temperature) and temperature >= REFERENCE:
+def _finite(temperature: float) -> float | None:
+    """None where no warmth loosens the joint, because the hub does not outgrow its shaft."""
+    if temperature == math.inf:
+        return None
+    if temperature >= REFERENCE:
         return temperature
-    if temperature > 0.0 and not math.isfinite(temperature):
-        raise OutOfRange("the hub does not outgrow its shaft, so warmth does not loosen it")
     raise OutOfRange("the loosest pair does not hold even at 20 degC")
 
 
