@@ -9,9 +9,8 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING
 
-from setupcheck.errors import JobError, RuleBookError, SetupcheckError
-
 if TYPE_CHECKING:
+    from setupcheck.errors import JobError, RuleBookError, SetupcheckError
     from setupcheck.flow import Review, load_job, review
 
 __version__ = "0.1.0"
@@ -19,7 +18,11 @@ __all__ = ["JobError", "Review", "RuleBookError", "SetupcheckError", "__version_
 
 
 def __getattr__(name: str) -> object:
-    """The work behind the facade is imported when it is asked for, so that the command's help starts at once."""
+    """What stands behind the facade is imported when it is asked for, so that the command's help starts at once."""
+    if name in ("JobError", "RuleBookError", "SetupcheckError"):
+        from setupcheck import errors
+
+        return getattr(errors, name)
     if name in ("Review", "load_job", "review"):
         from setupcheck import flow
 

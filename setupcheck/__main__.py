@@ -1,6 +1,6 @@
 """`python -m setupcheck`: the same as the command."""
 
-from setupcheck.cli.main import run
+from setupcheck.cli.main import run_and_leave
 
 if __name__ == "__main__":
-    run()
+    run_and_leave()

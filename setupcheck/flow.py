@@ -82,6 +82,7 @@ def review(job: LoadedJob | str | Path, *, house: str | Path | None = None, on: 
     book_of_rules = rules()
     own = _house(Path(house), book_of_rules, book) if house is not None else None
 
+    @cache  # every rule asks for the same few
     def facts(scope: Scope, name: str) -> Fact:
         found = facts_of(floor, scope, name)
         return Unknown(found.path) if isinstance(found, UnknownFact) else found

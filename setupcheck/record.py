@@ -9,7 +9,9 @@ from __future__ import annotations
 
 from collections.abc import Callable
 from dataclasses import MISSING, FrozenInstanceError, dataclass, field, fields
+from functools import cache
 from operator import attrgetter
+from types import CodeType, FunctionType
 from typing import Any, NoReturn, TypeVar, dataclass_transform, overload
 
 T = TypeVar("T")
@@ -18,14 +20,15 @@ T = TypeVar("T")
 @overload
 def record(cls: type[T], /) -> type[T]: ...
 @overload
-def record(*, eq: bool = True, kw_only: bool = False) -> Callable[[type[T]], type[T]]: ...
+def record(*, eq: bool = True, kw_only: bool = False, frozen: bool = True) -> Callable[[type[T]], type[T]]: ...
 @dataclass_transform(frozen_default=True, field_specifiers=(field,))
 def record(
-    cls: type[T] | None = None, /, *, eq: bool = True, kw_only: bool = False
+    cls: type[T] | None = None, /, *, eq: bool = True, kw_only: bool = False, frozen: bool = True
 ) -> type[T] | Callable[[type[T]], type[T]]:
     """The class as a frozen record: fields as in a dataclass, kept in slots, set once.
 
-    eq  compare and hash by the fields; without it a record is equal to itself alone, or as its own `__eq__` says
+    eq      compare and hash by the fields; without it a record is equal to itself alone, or as its own `__eq__` says
+    frozen  False for what is filled on the way: its fields may be set again, and it is equal to itself alone
 
     >>> @record
     ... class Span:
@@ -38,18 +41,14 @@ def record(
     dataclasses.FrozenInstanceError: a Span cannot change its low
     """
     if cls is None:
-        return lambda cls: _made(cls, eq=eq, kw_only=kw_only)
-    return _made(cls, eq=eq, kw_only=kw_only)
+        return lambda cls: _made(cls, eq=eq and frozen, kw_only=kw_only, frozen=frozen)
+    return _made(cls, eq=eq and frozen, kw_only=kw_only, frozen=frozen)
 
 
-def _made(cls: type[T], *, eq: bool, kw_only: bool) -> type[T]:
-    shared: dict[str, object] = {
-        "__init__": _first_init,
-        "__repr__": _repr,
-        "__setattr__": _refuse_to_set,
-        "__delattr__": _refuse_to_delete,
-        "__reduce__": _reduce,
-    }
+def _made(cls: type[T], *, eq: bool, kw_only: bool, frozen: bool) -> type[T]:
+    shared: dict[str, object] = {"__init__": _first_init, "__repr__": _repr, "__reduce__": _reduce}
+    if frozen:
+        shared |= {"__setattr__": _refuse_to_set, "__delattr__": _refuse_to_delete}
     if eq:
         shared |= {"__eq__": _eq, "__hash__": _hash}
     for name, method in shared.items():
@@ -69,6 +68,40 @@ def _first_init(self: Any, *args: object, **given: object) -> None:
 
 def _written_init(cls: Any) -> Callable[..., None]:
     """`__init__` with the fields as its arguments. A slot is set by its own descriptor, as nothing else can set it."""
+    plain = all(f.init and f.default_factory is MISSING for f in fields(cls)) and not hasattr(cls, "__post_init__")
+    return _named_init(cls) if plain else _compiled_init(cls)
+
+
+def _named_init(cls: Any) -> Callable[..., None]:
+    """A constructor that only sets fields: compiled once for each number of fields, here given the names of these."""
+    ordered = sorted(fields(cls), key=lambda f: bool(f.kw_only))  # those by keyword only come last
+    by_name = [f for f in ordered if f.kw_only]
+    code = _setting(len(ordered)).replace(
+        co_name="__init__",
+        co_varnames=("self", *(f.name for f in ordered)),
+        co_argcount=1 + len(ordered) - len(by_name),
+        co_kwonlyargcount=len(by_name),
+    )
+    setters = {f"_set_{number}": getattr(cls, f.name).__set__ for number, f in enumerate(ordered)}
+    defaults = tuple(f.default for f in ordered if f.default is not MISSING and not f.kw_only)
+    init = FunctionType(code, setters, "__init__", defaults)
+    init.__kwdefaults__ = {f.name: f.default for f in by_name if f.default is not MISSING}
+    init.__qualname__ = f"{cls.__qualname__}.__init__"
+    return init
+
+
+@cache
+def _setting(count: int) -> CodeType:
+    """Code of a function that sets so many fields of its first argument to the others."""
+    names = [f"_{number}" for number in range(count)]
+    lines = "\n".join(f" _set{name}(self, {name})" for name in names) or " pass"
+    found: dict[str, FunctionType] = {}
+    exec(f"def init({', '.join(['self', *names])}):\n{lines}", found)  # no text from anywhere else
+    return found["init"].__code__
+
+
+def _compiled_init(cls: Any) -> Callable[..., None]:
+    """A constructor of a record with made-up defaults, fields that are no arguments, or work to do at the end."""
     known: dict[str, object] = {}
     arguments: dict[bool, list[str]] = {False: [], True: []}  # those by keyword only come last
     lines: list[str] = []

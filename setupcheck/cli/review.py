@@ -1,6 +1,6 @@
 """`setupcheck review JOB…`: judge job files."""
 
-from __future__ import annotations
+# Annotations are evaluated as they stand (no __future__ import): typer would have to compile each of them from its text.
 
 import os
 import sys

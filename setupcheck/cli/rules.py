@@ -1,6 +1,6 @@
 """`setupcheck rules [ID]`: the rule book."""
 
-from __future__ import annotations
+# Annotations are evaluated as they stand (no __future__ import): typer would have to compile each of them from its text.
 
 import sys
 from typing import Annotated

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Iterator, Mapping
-from dataclasses import dataclass, field
+from dataclasses import field
 
 from setupcheck import notation
 from setupcheck.jobfile.cuts import LEFT
@@ -12,6 +12,7 @@ from setupcheck.jobfile.models import Round
 from setupcheck.jobfile.names import Miss, Ref
 from setupcheck.jobfile.nodes import list_of, map_of, number_of
 from setupcheck.notation import NotationError
+from setupcheck.record import record
 
 FURTHEST_APART = 0.02
 """Share of the larger diameter by which a bore and the cylinder in it may differ. Source: our screening choice, far above
@@ -22,7 +23,7 @@ GOES_IN = ("cylinder", "taper", "thread")
 """A taper or thread may be inside or outside, the job file does not say."""
 
 
-@dataclass(slots=True)
+@record(frozen=False)
 class _Floor:
     """What has happened so far: which parts are one piece, who was held and how each surface was last cut.
 

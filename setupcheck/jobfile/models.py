@@ -11,7 +11,6 @@ from pydantic import (
     BeforeValidator,
     Field,
     ValidationInfo,
-    WithJsonSchema,
     model_validator,
 )
 
@@ -27,6 +26,7 @@ from setupcheck.jobfile.types import (
     Length,
     Limit,
     Limits,
+    Read,
     Reading,
     Roughness,
     Service,
@@ -133,10 +133,6 @@ class Deviation(Shop):
         return 0.0 if self.uncertainty is None else self.uncertainty / 2.0
 
 
-_DEVIATION_SCHEMA = {"anyOf": [{"type": "string"}, {"$ref": "#/$defs/Deviation"}]}
-_SIZE_SCHEMA = {"anyOf": [{"type": ["string", "number"]}, {"$ref": "#/$defs/Dimension"}]}
-
-
 def _above_zero(given: Dimension, info: ValidationInfo) -> Dimension:
     if given.value <= 0.0:
         raise ValueError(f"{in_file_units(given.value, info)} is not a diameter. Write a size above zero")
@@ -149,24 +145,24 @@ def _without_sign(given: Deviation) -> Deviation:
     return given
 
 
-Error = Annotated[Deviation, WithJsonSchema(_DEVIATION_SCHEMA)]
-RunOut = Annotated[Deviation, AfterValidator(_without_sign), WithJsonSchema(_DEVIATION_SCHEMA)]
+Error = Deviation
+RunOut = Annotated[Deviation, AfterValidator(_without_sign)]
 """A dial reading has no sign; a length error has one."""
-Dim = Annotated[Dimension, WithJsonSchema(_SIZE_SCHEMA)]
-Diameter = Annotated[Dimension, AfterValidator(_above_zero), WithJsonSchema(_SIZE_SCHEMA)]
+Dim = Dimension
+Diameter = Annotated[Dimension, AfterValidator(_above_zero)]
 
 
 # -- surfaces of a part ----------------------------------------------------------------------------------------------
 
 
-def _end(given: object) -> int:
+def _end(given: object, info: ValidationInfo) -> int:
     way = {"+z": 1, "-z": -1}.get(given) if isinstance(given, str) else None
     if way is None:
         raise ValueError(f"{notation.quoted(given)} is no end of the part. Write +z or -z")
     return way
 
 
-Facing = Annotated[Literal[1, -1], BeforeValidator(_end), WithJsonSchema({"enum": ["+z", "-z"]})]
+Facing = Annotated[Literal[1, -1], Read(_end, words=("+z", "-z"))]
 
 
 class Round(Shop):

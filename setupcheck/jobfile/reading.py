@@ -10,7 +10,7 @@ from pathlib import Path
 from types import UnionType
 from typing import Annotated, Literal, TypeVar, Union, get_args, get_origin
 
-from pydantic import BaseModel, TypeAdapter, ValidationError, WithJsonSchema
+from pydantic import BaseModel, TypeAdapter, ValidationError
 from pydantic_core import ErrorDetails
 
 from setupcheck.errors import JobError, Problem
@@ -19,6 +19,7 @@ from setupcheck.jobfile.drawing import drawing_of
 from setupcheck.jobfile.examples import ENTRIES, SHAPES, TO_BEGIN
 from setupcheck.jobfile.models import Require, Surface
 from setupcheck.jobfile.setups import Job
+from setupcheck.jobfile.types import Read
 from setupcheck.notation import Units, nearest, plain, quoted
 from setupcheck.record import record
 from setupcheck.yamlfile import Data, Place, Tree, parse, read_text
@@ -339,8 +340,8 @@ def _choices_at(loc: Loc) -> str:
     fields = [f for m in _models_at(loc[:-1]) for n, f in m.model_fields.items() if loc[-1] in (f.alias, n)][:1]
     choices: Sequence[object] = ()
     for field in fields:
-        written = [s.json_schema.get("enum") for s in field.metadata if isinstance(s, WithJsonSchema) and s.json_schema]
-        if written and written[0]:  # the file's words for it, where the model holds something else
+        written = [s.words for s in field.metadata if isinstance(s, Read) and s.words]
+        if written:  # the file's words for it, where the model holds something else
             choices = written[0]
         elif get_origin(field.annotation) is Literal:
             choices = get_args(field.annotation)

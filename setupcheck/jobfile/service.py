@@ -3,10 +3,10 @@
 # Annotations are evaluated as they stand: pydantic would have to compile each of them from its text.
 from typing import Annotated
 
-from pydantic import BeforeValidator, WithJsonSchema
+from pydantic import ValidationInfo
 
 from setupcheck import notation
-from setupcheck.jobfile.types import as_listed
+from setupcheck.jobfile.types import Read, as_listed
 from setupcheck.record import record
 
 _WRITE = "Write [5 degC, 45 degC], or {hub: 75 degC, shaft: 60 degC} in place of one of them"
@@ -35,7 +35,7 @@ def _temperature(given: object) -> float:
     return notation.temperature(given)
 
 
-def _states(given: object) -> tuple[Warmth, Warmth]:
+def _states(given: object, info: ValidationInfo) -> tuple[Warmth, Warmth]:
     if not isinstance(given, list) or len(given) != 2:
         raise ValueError(f"{as_listed(given)} is not a span of temperatures. {_WRITE}")
     cold, warm = (_state(g) for g in given)
@@ -44,21 +44,5 @@ def _states(given: object) -> tuple[Warmth, Warmth]:
     return cold, warm
 
 
-_ONE = {
-    "anyOf": [
-        {"type": "string"},
-        {
-            "type": "object",
-            "properties": {"hub": {"type": "string"}, "shaft": {"type": "string"}},
-            "required": ["hub", "shaft"],
-            "additionalProperties": False,
-        },
-    ]
-}
-
-JointService = Annotated[
-    tuple[Warmth, Warmth],
-    BeforeValidator(_states),
-    WithJsonSchema({"type": "array", "items": _ONE, "minItems": 2, "maxItems": 2}),
-]
+JointService = Annotated[tuple[Warmth, Warmth], Read(_states)]
 """Coldest and warmest state of a joint in use."""

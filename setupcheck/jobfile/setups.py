@@ -3,7 +3,7 @@
 # Annotations are evaluated as they stand (no __future__ import): pydantic would have to compile each of them from its text.
 from typing import Annotated, Literal, Self
 
-from pydantic import BeforeValidator, Field, ValidationInfo, WithJsonSchema, model_validator
+from pydantic import BeforeValidator, Field, ValidationInfo, model_validator
 
 from setupcheck.jobfile.heating import Heat
 from setupcheck.jobfile.models import (
@@ -294,14 +294,7 @@ class Cut(Shop):
     cutter: str | None = None
     depth: Size | None = None
     depth_error: Error | None = None
-    depth_from: (
-        Annotated[
-            Touched,
-            BeforeValidator(lambda g: {"surface": g} if isinstance(g, str) else g),
-            WithJsonSchema({"anyOf": [{"type": "string"}, {"$ref": "#/$defs/Touched"}]}),
-        ]
-        | None
-    ) = None
+    depth_from: Annotated[Touched, BeforeValidator(lambda g: {"surface": g} if isinstance(g, str) else g)] | None = None
     passes: tuple[Size, ...] = ()
     each: Scatter | None = None
     spindle_to_axis: dict[Literal["x", "y"], Dim] | None = None

@@ -63,7 +63,7 @@ def meant(tree: Tree) -> tuple[Tree, list[Problem]]:
         write = f"Write {SHAPES['setups']}"
         problems.append(Problem("setups", place.line, place.column, place.length, missing, write))
     kept = tuple(p for p in tree.problems if p.path not in swapped)  # the numbers that stood as keys
-    return replace(tree, data=data, root=root, problems=kept), problems
+    return replace(tree, data=data, places=root, problems=kept), problems
 
 
 def _some_given(data: dict[str, Data]) -> bool:

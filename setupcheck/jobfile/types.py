@@ -4,17 +4,15 @@ from __future__ import annotations
 
 import re
 from collections.abc import Callable
-from typing import Annotated, Literal
+from typing import Annotated, Any, Literal
 
-from pydantic import BaseModel, BeforeValidator, ConfigDict, ValidationError, ValidationInfo, WithJsonSchema
-from pydantic_core import InitErrorDetails, PydanticCustomError
+from pydantic import BaseModel, BeforeValidator, ConfigDict, GetCoreSchemaHandler, ValidationError, ValidationInfo
+from pydantic_core import InitErrorDetails, PydanticCustomError, core_schema
 
 from setupcheck import notation
 from setupcheck.notation import Amount, NotationError
 
 Given = str | int | float
-TEXT_OR_NUMBER = WithJsonSchema({"type": ["string", "number"]})
-TEXT = WithJsonSchema({"type": "string"})
 INCH = 25.4  # mm, exactly (international yard and pound agreement, 1959)
 
 
@@ -55,8 +53,25 @@ def _scalar(given: object) -> Given:
     return given
 
 
-def _plain(read: Callable[[Given], float]) -> BeforeValidator:
-    return BeforeValidator(lambda given: read(_scalar(given)))
+class Read:
+    """A value that a function of ours reads from the file and hands over finished.
+
+    pydantic gets the whole schema ready: working it out anew for each of 150 fields took a fiftieth of the command.
+    read   of what stands in the file, with the file's units in its `ValidationInfo`
+    words  all that may stand there, where that is a short list
+    """
+
+    def __init__(self, read: Callable[[Any, ValidationInfo], object], words: tuple[str, ...] = ()) -> None:
+        self.schema = core_schema.with_info_plain_validator_function(read)
+        self.words = words
+
+    def __get_pydantic_core_schema__(self, source: object, handler: GetCoreSchemaHandler) -> core_schema.CoreSchema:
+        return self.schema
+
+
+def _plain(read: Callable[[Given], object]) -> Read:
+    """Of one value, whatever the units of the file."""
+    return Read(lambda given, info: read(_scalar(given)))
 
 
 def _size(given: object, info: ValidationInfo) -> float:
@@ -127,9 +142,9 @@ def _whole(given: object) -> object:
     return given
 
 
-def _angle_bound(given: object) -> float:
+def _angle_bound(given: Given) -> float:
     try:
-        return notation.angle_bound(_scalar(given))
+        return notation.angle_bound(given)
     except NotationError as why:
         if why.hint.startswith("Write it as in"):  # errors of angles are small: an example in degrees would mislead
             raise NotationError(why.problem, 'Write it as in ±5"') from None
@@ -139,8 +154,8 @@ def _angle_bound(given: object) -> float:
         raise
 
 
-def _tilt(given: object) -> float:
-    tilt = notation.angle(_scalar(given))
+def _tilt(given: Given) -> float:
+    tilt = notation.angle(given)
     if tilt < 0.0:
         size = str(given).strip().lstrip("-\u2212\u2013 ")
         raise ValueError(f"a tilt has no sign. Write {size}, and under leans where the nose goes")
@@ -203,66 +218,55 @@ def _housing(given: object, info: ValidationInfo) -> object:
     raise ValueError(f"{notation.quoted(given)} is a length, not a material. {advice}")
 
 
-Length = Annotated[float, BeforeValidator(_size), TEXT_OR_NUMBER]
+Length = Annotated[float, Read(_size)]
 """A size or position [mm]; a bare number takes the file's units."""
-Size = Annotated[float, BeforeValidator(_positive_size), TEXT_OR_NUMBER]
+Size = Annotated[float, Read(_positive_size)]
 """A length above zero [mm]."""
-Bound = Annotated[float, BeforeValidator(_bound), TEXT]
+Bound = Annotated[float, Read(_bound)]
 """A non-negative error bound [mm]; the unit must be written."""
-Division = Annotated[float, BeforeValidator(_division), TEXT]
+Division = Annotated[float, Read(_division)]
 """One division of an indicator [mm], above zero; the unit must be written."""
-Reading = Annotated[float, BeforeValidator(_signed_error), TEXT]
+Reading = Annotated[float, Read(_signed_error)]
 """A signed measured error [mm]; the unit must be written."""
-Play = Annotated[
-    tuple[float, float], BeforeValidator(_range), WithJsonSchema({"type": "array", "items": {"type": "string"}})
-]
+Play = Annotated[tuple[float, float], Read(_range)]
 """Smallest and largest diametral clearance [mm]."""
-Angle = Annotated[float, _plain(notation.angle), TEXT]
+Angle = Annotated[float, _plain(notation.angle)]
 """An angle [rad]; the unit must be written."""
-AngleBound = Annotated[float, BeforeValidator(_angle_bound), TEXT]
+AngleBound = Annotated[float, _plain(_angle_bound)]
 """A non-negative angle bound [rad]."""
-Tilt = Annotated[float, BeforeValidator(_tilt), TEXT]
+Tilt = Annotated[float, _plain(_tilt)]
 """A tilt of a head [rad], without sign: `leans` says which way."""
 Version = Annotated[Literal[1], BeforeValidator(_whole)]
 """Of the job file."""
 Whole = Annotated[int, BeforeValidator(_whole)]
 """A whole number; true and false are none."""
-Housing = Annotated[str, BeforeValidator(_housing), TEXT]
+Housing = Annotated[str, BeforeValidator(_housing)]
 """The name of a material."""
-Temperature = Annotated[float, _plain(notation.temperature), TEXT]
-TemperatureDifference = Annotated[
-    float, _plain(lambda given: notation.temperature_difference(given, at_least=0.0)), TEXT
-]
+Temperature = Annotated[float, _plain(notation.temperature)]
+TemperatureDifference = Annotated[float, _plain(lambda given: notation.temperature_difference(given, at_least=0.0))]
 """An error of a temperature or a distance between two [K], never below zero."""
-Pressure = Annotated[float, _plain(notation.pressure), TEXT]
+Pressure = Annotated[float, _plain(notation.pressure)]
 """A stress or modulus [MPa]; the unit must be written."""
-Expansion = Annotated[float, _plain(notation.expansion), TEXT]
+Expansion = Annotated[float, _plain(notation.expansion)]
 """A thermal expansion [1/K]; the unit must be written."""
-Conductivity = Annotated[float, _plain(notation.conductivity), TEXT]
+Conductivity = Annotated[float, _plain(notation.conductivity)]
 """A heat conductivity [W/mK]; the unit must be written."""
-Roughness = Annotated[notation.Roughness, BeforeValidator(lambda given: notation.roughness(_scalar(given))), TEXT]
+Roughness = Annotated[notation.Roughness, _plain(notation.roughness)]
 """A roughness with its figure, Ra or Rz."""
-Duration = Annotated[float, _plain(notation.duration), TEXT]
-Volume = Annotated[float, _plain(notation.volume), TEXT]
+Duration = Annotated[float, _plain(notation.duration)]
+Volume = Annotated[float, _plain(notation.volume)]
 """A volume [m3]; the unit must be written."""
-Coolant = Annotated[Amount, BeforeValidator(_coolant), TEXT]
+Coolant = Annotated[Amount, _plain(_coolant)]
 """What boils off: litres of liquid nitrogen [m3] or a mass of dry ice [kg]."""
-Force = Annotated[float, _plain(notation.force), TEXT]
+Force = Annotated[float, _plain(notation.force)]
 """A force [N]; the unit must be written."""
-Speed = Annotated[float, _plain(notation.speed), TEXT]
+Speed = Annotated[float, _plain(notation.speed)]
 """[rev/min]"""
-Fraction = Annotated[float, _plain(notation.fraction), TEXT_OR_NUMBER]
-Limit = Annotated[Amount, BeforeValidator(_amount), TEXT_OR_NUMBER]
+Fraction = Annotated[float, BeforeValidator(lambda given: notation.fraction(_scalar(given)))]
+"""A share; its fields have bounds of their own, so pydantic looks at the number again."""
+Limit = Annotated[Amount, Read(_amount)]
 Carried = Annotated[dict[Literal["torque", "axial_force"], Limit], BeforeValidator(_carried)]
 """What a joint has to carry: torque [N mm] and force along its axis [N]."""
-Limits = Annotated[
-    tuple[Amount, Amount],
-    BeforeValidator(_amounts),
-    WithJsonSchema({"type": "array", "items": {"type": "string"}, "minItems": 2, "maxItems": 2}),
-]
-Service = Annotated[
-    tuple[float, float],
-    BeforeValidator(_service),
-    WithJsonSchema({"type": "array", "items": {"type": "string"}, "minItems": 2, "maxItems": 2}),
-]
+Limits = Annotated[tuple[Amount, Amount], Read(_amounts)]
+Service = Annotated[tuple[float, float], Read(_service)]
 """Coldest and warmest temperature in use [degC]."""

@@ -62,6 +62,7 @@ class Cause:
     rests_on name of the typical value used, if any
     pair     name under which clearances draw one common play (two planes of one fit)
     shared   one cause in several setups (a device whose mark is kept): known by its name alone
+    bound    largest |X - mean| [mm or rad]; infinite for an undetermined cause;  is_real  X has no direction
     Source of the laws: uniform over the disc is our choice by analogy to JCGM 100:2008 4.3.7; the ring of random phase
     is the fixed eccentricity of unknown direction; rectangular lengths JCGM 100:2008 4.3.7.
     """
@@ -81,10 +82,14 @@ class Cause:
     shared: bool = False
     of: Account | None = None
     identity: str = field(init=False, default="")
+    bound: float = field(init=False, default=0.0)
+    is_real: bool = field(init=False, default=False)
 
     def __post_init__(self) -> None:
         place = "" if self.shared or not self.paths else self.paths[0]
         object.__setattr__(self, "identity", f"{self.key} [{place}]" if place else self.key)
+        object.__setattr__(self, "bound", self._bound())
+        object.__setattr__(self, "is_real", self.law in ("length", "gauss", "one-sided", "high-point"))
 
     def __eq__(self, other: object) -> bool:
         return isinstance(other, Cause) and self.identity == other.identity
@@ -92,13 +97,7 @@ class Cause:
     def __hash__(self) -> int:
         return hash(self.identity)
 
-    @property
-    def is_real(self) -> bool:
-        return self.law in ("length", "gauss", "one-sided", "high-point")
-
-    @property
-    def bound(self) -> float:
-        """Largest |X - mean| [mm or rad]; infinite for an undetermined cause."""
+    def _bound(self) -> float:
         match self.law:
             case "disc" | "length" | "one-sided":
                 return self.high

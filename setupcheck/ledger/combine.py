@@ -35,7 +35,7 @@ class Draws:
 
     def __init__(self, trials: int = TRIALS) -> None:
         self.trials = trials
-        self._causes: dict[Cause, Complexes] = {}
+        self._causes: dict[Cause, Reals | Complexes] = {}
         self._arcs: dict[int, tuple[Pattern, Reals]] = {}
         self._radials: dict[int, tuple[Pattern, Reals]] = {}
         self.memo: dict[object, Reals] = {}
@@ -45,16 +45,16 @@ class Draws:
         """The stream of random numbers that belongs to a name, the same on every machine."""
         return np.random.Generator(np.random.PCG64(stream_key(name)))
 
-    def cause(self, cause: Cause) -> Complexes:
-        """X of one cause, shape (trials,); complex also where X is real."""
+    def cause(self, cause: Cause) -> Reals | Complexes:
+        """X of one cause, shape (trials,)."""
         found = self._causes.get(cause)
         if found is None:
             found = self._causes[cause] = self._draw(cause)
             if cause.mean:
-                found += np.complex64(cause.mean)
+                found += _single(cause.mean.real) if cause.is_real else np.complex64(cause.mean)
         return found
 
-    def _draw(self, cause: Cause) -> Complexes:
+    def _draw(self, cause: Cause) -> Reals | Complexes:
         rng, n = self.stream(cause.identity), self.trials
         match cause.law:
             case "disc":
@@ -75,14 +75,14 @@ class Draws:
             case "rectangle":
                 return _complex(_single(cause.low) * _both_ways(rng, n), _single(cause.high) * _both_ways(rng, n))
             case "length":
-                return _complex(_single(cause.high) * _both_ways(rng, n))
+                return _single(cause.high) * _both_ways(rng, n)
             case "gauss":
-                return _complex(_single(cause.spread) * _cut_normal(rng, n))
+                return _single(cause.spread) * _cut_normal(rng, n)
             case "one-sided":
-                return _complex(_single(cause.high) * _uniform(rng, n))
+                return _single(cause.high) * _uniform(rng, n)
             case "high-point":
                 assert cause.of is not None
-                return _complex(np.abs(self.account(cause.of)))
+                return np.asarray(np.abs(self.account(cause.of)))
             case _:
                 raise ValueError(f"{cause.key} is undetermined and has no value to draw")
 
@@ -160,7 +160,7 @@ def _polar(radius: Reals, turns: Reals) -> Complexes:
     return _complex(radius * np.cos(angle), radius * np.sin(angle))
 
 
-def _complex(real: Reals, imag: Reals | float = 0.0) -> Complexes:
+def _complex(real: Reals, imag: Reals) -> Complexes:
     out = np.empty(len(real), dtype=np.complex64)
     out.real, out.imag = real, imag
     return out

@@ -15,7 +15,6 @@ involute in the tests agrees within 0.03 um at e = 20 um.
 from __future__ import annotations
 
 import cmath
-import functools
 import math
 from collections.abc import Callable, Iterator, Sequence
 
@@ -62,7 +61,7 @@ def backlash_swing(eccentricity: float, pressure_angle: float) -> float:
 
 def division_arcs(
     pattern: Pattern,
-    index_waves: list[Complexes],
+    index_waves: Sequence[Reals | Complexes],
     drifts: list[Reals],
     each: list[Reals],
     trials: int,
@@ -91,24 +90,29 @@ def division_arcs(
         arcs += scatter.T
     if pattern.turn < 0:
         np.negative(arcs, out=arcs)
-    block = max(1, BLOCK // pattern.count)
-    for start in range(0, trials, block):
-        arcs[:, start : start + block] += basis @ parts[:, start : start + block]
+    for here, product in _products(basis, parts):
+        arcs[:, here] += product
     return arcs.T
+
+
+def _products(basis: Reals, parts: Reals) -> Iterator[tuple[slice, Reals]]:
+    """basis @ parts, block by block of the columns of `parts`, each time in the same memory: read it before the next."""
+    width, trials = max(1, BLOCK // len(basis)), parts.shape[1]
+    room = np.empty((len(basis), width), dtype=np.float32)
+    for start in range(0, trials, width):
+        here = slice(start, min(start + width, trials))
+        yield here, np.matmul(basis, parts[:, here], out=room[:, : here.stop - start])
 
 
 def waves(vectors: Complexes, at: Reals) -> Reals:
     """Re(X exp(-i theta)) for every vector and angle, shape (len(vectors), len(at)), places lying apart in memory."""
-    return np.concatenate(list(_waves(vectors, at)))
+    return np.concatenate([part.T.copy(order="K") for _, part in _waves(vectors, at)])
 
 
-def _waves(vectors: Complexes, at: Reals) -> Iterator[Reals]:
-    """The same, block by block of the vectors."""
+def _waves(vectors: Complexes, at: Reals) -> Iterator[tuple[slice, Reals]]:
+    """The same, block by block of the vectors, shape (len(at), so many), each time in the same memory."""
     basis = np.stack([np.cos(at), np.sin(at)], axis=1).astype(np.float32)
-    parts = np.stack([vectors.real, vectors.imag]).astype(np.float32)
-    block = max(1, BLOCK // len(at))
-    for start in range(0, len(vectors), block):
-        yield (basis @ parts[:, start : start + block]).T
+    return _products(basis, np.stack([vectors.real, vectors.imag]).astype(np.float32))
 
 
 def figure_of(
@@ -119,22 +123,24 @@ def figure_of(
     figure   of every trial's places: `ranges` or `largest_steps`
     vectors  one array (trials,) a flank;  added  one array (trials, len(at)) a flank
     """
-    blocks = zip(*(_waves(v, at) for v in vectors), strict=True)
-    found, start = [], 0
-    for flanks in blocks:
-        now = slice(start, start + len(flanks[0]))
-        for flank, more in zip(flanks, added, strict=True):
-            flank += more[now]
-        found.append(functools.reduce(np.maximum, map(figure, flanks)))
-        start = now.stop
-    return np.concatenate(found)
+    found: Reals | None = None
+    for vector, more in zip(vectors, added, strict=True):
+        own = np.empty(len(vector), dtype=np.float32)
+        for here, flank in _waves(vector, at):
+            flank += more.T[:, here]
+            own[here] = figure(flank.T)
+        found = own if found is None else np.maximum(found, own)
+    assert found is not None, "teeth have at least one flank"
+    return found
 
 
 def wave_ends(vectors: Complexes, at: Reals) -> tuple[Reals, Reals]:
     """Lowest and highest of Re(X exp(-i theta)) over the angles, each of shape (len(vectors),)."""
-    ends = [(part.min(axis=1), part.max(axis=1)) for part in _waves(vectors, at)]
-    low, high = zip(*ends, strict=True)
-    return np.concatenate(low), np.concatenate(high)
+    low, high = np.empty((2, len(vectors)), dtype=np.float32)
+    for here, part in _waves(vectors, at):
+        part.min(axis=0, out=low[here])
+        part.max(axis=0, out=high[here])
+    return low, high
 
 
 def flank_turn(pattern: Pattern, *, side: int, driven: bool) -> complex:

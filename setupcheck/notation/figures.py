@@ -18,7 +18,7 @@ SMALLEST_EXPONENT = -400  # below every float
 
 NUMBER = r"(?:[0-9]+\.?[0-9]*|\.[0-9]+)(?:[eE][+-]?[0-9]+)?"
 _NUMBER = re.compile(rf"([+-]?)\s?({NUMBER})")
-_INCH_FRACTION = re.compile(r"([+-]?)\s?(?:([0-9]{1,4})( |-))?([0-9]{1,4})/([0-9]{1,4})(?![0-9./])\s*(.*)")
+_INCH_FRACTION = r"([+-]?)\s?(?:([0-9]{1,4})( |-))?([0-9]{1,4})/([0-9]{1,4})(?![0-9./])\s*(.*)"
 _FRACTION_PARTS = (2, 4, 8, 16, 32, 64, 128)  # divisions of the inch on rules and drills
 _INCHES = frozenset({"in", "in.", "inch", "inches", '"'})
 
@@ -54,7 +54,7 @@ def figure(given: Given, kind: Kind, *, text: str | None = None, units: str = "m
             f"{quoted(given)} has a \u00b1 sign where {kind.called} without sign stands",
             f"Write {text.replace(chr(0xB1), '').strip()}",
         )
-    in_parts = _INCH_FRACTION.fullmatch(text)
+    in_parts = re.fullmatch(_INCH_FRACTION, text) if "/" in text else None
     if in_parts and kind.name in ("length", "number"):
         return _inch_fraction(in_parts, given, kind, units)
     if re.search(r"\.[0-9]*\.", text):
@@ -99,7 +99,7 @@ def text_of(given: Given, kind: Kind) -> str:
 
 def refuse_odd_characters(text: str, given: Given, kind: Kind) -> None:
     """Decimal commas and digits of other alphabets never reach a number."""
-    if any(c.isdigit() and not c.isascii() and c not in "\u00b2\u00b3" for c in text):
+    if not text.isascii() and any(c.isdigit() and not c.isascii() and c not in "\u00b2\u00b3" for c in text):
         import unicodedata
 
         typed = unicodedata.normalize("NFKC", text).replace("\u2044", "/")

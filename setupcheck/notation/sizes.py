@@ -28,7 +28,7 @@ _ONE_DEVIATION = re.compile(_ONE)
 _TWO_DEVIATIONS = re.compile(rf"{_ONE}(?:\s*/\s*|\s+|(?=[+-])){_ONE}")
 _FIT = re.compile(r"(.*?[0-9.\"A-Za-z])(\s*)(?<![A-Za-z])([A-Za-z]{1,2})([0-9]{1,2})")
 _FIT_APART = re.compile(r"(.*?)\s([A-Za-z]{1,2})\s+([0-9]{1,2})")
-_TWO_CLASSES = re.compile(r".*[A-Za-z][0-9]{1,2}\s*/\s*[A-Za-z]{1,2}[0-9]{1,2}")
+_TWO_CLASSES = r".*[A-Za-z][0-9]{1,2}\s*/\s*[A-Za-z]{1,2}[0-9]{1,2}"
 
 
 @record
@@ -64,7 +64,7 @@ def size(given: Given, *, units: Units, at_least: float | None = None) -> Size:
         return _symmetrical(given, text, units, at_least)
     if not isinstance(given, str):
         return Size(_nominal(given, text, units, at_least))
-    if _TWO_CLASSES.fullmatch(text):
+    if "/" in text and re.fullmatch(_TWO_CLASSES, text):
         raise NotationError(
             f"{quoted(given)} names the classes of two parts", "Write the class of this surface alone, as in 32 H7"
         )

@@ -18,7 +18,7 @@ from __future__ import annotations
 
 import re
 from collections.abc import Iterable, Mapping
-from dataclasses import dataclass, field
+from dataclasses import field
 from itertools import pairwise
 
 from setupcheck.record import record
@@ -117,7 +117,7 @@ class Play:
         return f"{self.kind} {_um(low)} to {_um(high)} um"
 
 
-@dataclass(slots=True)
+@record(frozen=False)
 class _Looked:
     """A tolerance class at one size, and the cells read on the way."""
 

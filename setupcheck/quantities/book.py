@@ -8,8 +8,7 @@ from __future__ import annotations
 
 import math
 from collections.abc import Callable, Iterator, Mapping, Sequence
-from dataclasses import dataclass, field
-from typing import Protocol, runtime_checkable
+from dataclasses import field
 
 from setupcheck.record import record
 
@@ -17,23 +16,14 @@ SINGLE = frozenset({"job", "place", "worm", "mesh"})
 """Kinds of thing of which a job has at most one, so they are found from anywhere."""
 
 BY_INSTANCE = "stack"
-"""Unit of a quantity whose unit belongs to its instance: one stack counts in um, the next in arcsec."""
+"""Unit of a quantity whose unit belongs to its instance: one stack counts in um, the next in arcsec. Its record says in
+which, and with how many decimals, under `unit` and `digits`."""
 
 INCH = {"um": "thou", "mm": "in"}
 """What an inch file shows instead; one decimal more goes with it."""
 
 
-@runtime_checkable
-class HasUnit(Protocol):
-    """A record that says itself in which unit, and with how many decimals, its numbers are shown."""
-
-    @property
-    def unit(self) -> str: ...
-    @property
-    def digits(self) -> int: ...
-
-
-@dataclass(frozen=True, eq=False)
+@record(eq=False)
 class Scope:
     """One thing of the job that can own numbers.
 
@@ -114,78 +104,82 @@ class Book:
         self.scopes = tuple(scopes)
         self.inches = inches
         self.made: dict[tuple[str, Scope], Answer] = {}
+        self._of_kind: dict[str, list[Scope]] = {}
+        for scope in self.scopes:
+            self._of_kind.setdefault(scope.kind, []).append(scope)
 
-    def instances(self, kind: str) -> list[Scope]:
+    def instances(self, kind: str) -> Sequence[Scope]:
         """All things of one kind, in the order of the job."""
-        return [s for s in self.scopes if s.kind == kind]
+        return self._of_kind.get(kind, ())
 
     def home(self, name: str, at: Scope) -> Scope | None:
         """The instance of a quantity seen from `at`: outward only, never sideways."""
         kind = self.quantities[name].per
-        found = next((s for s in at.outward() if s.kind == kind), None)
-        if found is None and kind in SINGLE:
-            found = next((s for s in self.scopes if s.kind == kind), None)
-        return found
+        for scope in at.outward():
+            if scope.kind == kind:
+                return scope
+        return self._of_kind[kind][0] if kind in SINGLE and kind in self._of_kind else None
 
     def get(self, name: str, at: Scope) -> Answer:
         """The answer of one quantity or input, seen from `at`."""
+        if name in self.quantities:
+            home = self.home(name, at)
+            if home is None:
+                return None
+            if (name, home) not in self.made:
+                self.made[name, home] = self._make(self.quantities[name], home)
+            return self.made[name, home]
         if name.startswith(":"):
             return _entry(at, name[1:])
         if name.startswith("@"):
             return Known(getattr(at, name[1:]))
-        if name.startswith("settled "):
-            answer = self.get(name[8:], at)
+        how, _, inner = name.partition(" ")
+        if how == "settled":
+            answer = self.get(inner, at)
             return answer if isinstance(answer, Known) else None
-        if name.startswith("known "):
-            inner = name[6:]
-            answers = [self.get(inner, s) for s in self.instances(self.quantities[inner].per)]
-            return _together([a for a in answers if isinstance(a, Known)])
-        if name.startswith("each "):
-            inner = name[5:]
-            return _together([self.get(inner, s) for s in self.instances(self.quantities[inner].per)])
-        home = self.home(name, at)
-        if home is None:
-            return None
-        if (name, home) not in self.made:
-            self.made[name, home] = self._make(self.quantities[name], home)
-        return self.made[name, home]
+        if how not in ("each", "known"):
+            raise KeyError(name)
+        answers = [self.get(inner, s) for s in self.instances(self.quantities[inner].per)]
+        return _together(answers if how == "each" else [a for a in answers if isinstance(a, Known)])
 
     def unit(self, name: str, at: Scope) -> str:
         """Display unit of a quantity at an instance."""
         unit = self.quantities[name].unit
-        if unit == BY_INSTANCE and isinstance(at.node, HasUnit):
-            unit = at.node.unit
+        if unit == BY_INSTANCE:
+            unit = getattr(at.node, "unit", unit)
         return INCH.get(unit, unit) if self.inches else unit
 
     def digits(self, name: str, at: Scope) -> int:
         """Decimals shown of a quantity at an instance."""
         quantity = self.quantities[name]
         digits = quantity.digits
-        if quantity.unit == BY_INSTANCE and isinstance(at.node, HasUnit):
-            digits = at.node.digits
+        if quantity.unit == BY_INSTANCE:
+            digits = getattr(at.node, "digits", digits)
         return digits + (self.inches and self.unit(name, at) in INCH.values())
 
     def _make(self, quantity: Quantity, home: Scope) -> Answer:
-        got: dict[str, Answer] = {}
+        values: dict[str, object] = {}
+        opens: list[Open] = []
+        rests_on: frozenset[str] = frozenset()
         for argument, name in quantity.inputs.items():
             answer = self.get(name, home)
             if answer is None:
                 if argument not in quantity.if_none:
                     return None
-                answer = Known(quantity.if_none[argument])
-            got[argument] = answer
-        whole = _together(list(got.values()))
-        if isinstance(whole, Open):
-            return whole
-        values = whole.value
-        assert isinstance(values, tuple)
+                values[argument] = quantity.if_none[argument]
+            elif isinstance(answer, Open):
+                opens.append(answer)
+            else:
+                values[argument] = answer.value
+                rests_on |= answer.rests_on
+        if opens:
+            return _all_missing(opens)
         try:
-            made = quantity.of(**dict(zip(got, values, strict=True)))
+            made = quantity.of(**values)
         except OutOfRange as why:
             return Open(because=str(why))
         if made is None or isinstance(made, Open):
             return made
-        rests_on = whole.rests_on
         if isinstance(made, Known):
             rests_on = rests_on | made.rests_on
             made = made.value
@@ -210,7 +204,12 @@ def _together(parts: Sequence[Answer]) -> Known | Open:
     """All parts known: a tuple of their values; otherwise everything that is missing."""
     opens = [p for p in parts if isinstance(p, Open)]
     if opens:
-        missing = tuple(dict.fromkeys(m for o in opens for m in o.missing))
-        return Open(missing, "; ".join(dict.fromkeys(o.because for o in opens if o.because)))
+        return _all_missing(opens)
     known = [p for p in parts if isinstance(p, Known)]
     return Known(tuple(p.value for p in known), frozenset().union(*(p.rests_on for p in known)))
+
+
+def _all_missing(opens: Sequence[Open]) -> Open:
+    """What any of them lacks, each thing once."""
+    missing = tuple(dict.fromkeys(m for o in opens for m in o.missing))
+    return Open(missing, "; ".join(dict.fromkeys(o.because for o in opens if o.because)))

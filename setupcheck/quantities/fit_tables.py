@@ -10,7 +10,7 @@ from setupcheck.physics import iso_286
 from setupcheck.physics.iso_286 import Cell, Limits, Tables
 from setupcheck.quantities.book import OutOfRange
 from setupcheck.shipped import shipped
-from setupcheck.yamlfile import parse, read_text
+from setupcheck.yamlfile import parse_plain, read_text
 
 FILE = "rules/data/iso_286.yaml"
 
@@ -21,7 +21,7 @@ def tables() -> Tables:
 
     Raises: SetupcheckError if the file is missing or damaged.
     """
-    data = parse(read_text(shipped(FILE)), FILE).data
+    data = parse_plain(read_text(shipped(FILE)), FILE).data
     try:
         if not isinstance(data, dict) or data.get("format") != 1:
             raise ValueError("it is not in format 1")

@@ -7,7 +7,7 @@ from functools import cache
 from setupcheck.errors import SetupcheckError
 from setupcheck.record import record
 from setupcheck.shipped import shipped
-from setupcheck.yamlfile import parse, read_text
+from setupcheck.yamlfile import parse_plain, read_text
 
 FILE = "rules/data/friction.yaml"
 
@@ -28,7 +28,7 @@ def table() -> dict[tuple[str, str, str, str], Friction]:
 
     Raises: SetupcheckError if the file is damaged.
     """
-    data = parse(read_text(shipped(FILE)), FILE).data
+    data = parse_plain(read_text(shipped(FILE)), FILE).data
     rows = data.get("values") if isinstance(data, dict) and data.get("format") == 1 else None
     found: dict[tuple[str, str, str, str], Friction] = {}
     try:

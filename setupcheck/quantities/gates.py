@@ -9,7 +9,7 @@ from dataclasses import fields, replace
 from setupcheck.jobfile.models import Deviation
 from setupcheck.ledger.account import Account
 from setupcheck.ledger.causes import TRUNCATION, TRUNCATION_2D, Cause
-from setupcheck.ledger.figures import Figure, alternatives
+from setupcheck.ledger.figures import Figure, Push, alternatives
 from setupcheck.quantities.book import Scope
 from setupcheck.quantities.causes import kept_key
 from setupcheck.quantities.judged import Result
@@ -45,24 +45,36 @@ class Gate:
     high_at: str = ""
 
 
+@record
+class Reach:
+    """A figure at one of the places it is the worst of: with every cause at its known value, and how far each pushes it."""
+
+    base: float
+    pushes: list[Push]
+
+
+def reaches(figure: Figure) -> list[Reach]:
+    """All those places."""
+    return [Reach(one.base(), one.pushes()) for one in alternatives(figure)]
+
+
 def worst_excess(figure: Figure, low: float | None, high: float | None) -> float:
     """How far the worst case goes beyond its limits; negative inside. Source: base and pushes of the figure."""
-    return max(_excesses(figure, low, high), default=-math.inf)
+    return max(_excesses(reaches(figure), low, high), default=-math.inf)
 
 
-def _excesses(figure: Figure, low: float | None, high: float | None) -> list[float]:
+def _excesses(places: Sequence[Reach], low: float | None, high: float | None) -> list[float]:
     """The same for each limit, at each of the places the figure is the worst of."""
     found = []
-    for one in alternatives(figure):
-        base, pushes = one.base(), one.pushes()
+    for one in places:
         if high is not None:
-            found.append(base + sum(p.up for p in pushes) - high)
+            found.append(one.base + sum(p.up for p in one.pushes) - high)
         if low is not None:
-            found.append(low - base + sum(p.down for p in pushes))
+            found.append(low - one.base + sum(p.down for p in one.pushes))
     return found
 
 
-def room(figure: Figure, cause: Cause, *, low: float | None, high: float | None) -> float | None:
+def room(places: Sequence[Reach], cause: Cause, *, low: float | None, high: float | None) -> float | None:
     """Factor by which one cause without direction may grow (or must shrink) until the worst case meets its limit.
 
     1 + margin / push, over the places the figure is the worst of; 0 where it cannot help.  None where the cause does not
@@ -70,8 +82,8 @@ def room(figure: Figure, cause: Cause, *, low: float | None, high: float | None)
     Source: the worst case is linear in each bound, derived here.
     """
     found: list[float] = []
-    for one in alternatives(figure):
-        base, pushes = one.base(), one.pushes()
+    for one in places:
+        base, pushes = one.base, one.pushes
         mine = next((p for p in pushes if p.cause == cause), None)
         if mine is None:
             continue
@@ -112,7 +124,9 @@ def gates(scopes: Sequence[Scope], results: Sequence[tuple[str, Result]]) -> lis
     """
     found: list[Gate] = []
     shared: dict[str, int] = {}
-    behind = [(key, result, origins(result.figure)) for key, result in results]
+    behind = [
+        _Behind(key, result, places, origins(places)) for key, result in results for places in [reaches(result.figure)]
+    ]
     for scope in scopes:
         entry = scope.node
         if not isinstance(entry, HoldEntry) or entry.key == "error" or entry.error is None or scope.op is None:
@@ -133,12 +147,22 @@ def gates(scopes: Sequence[Scope], results: Sequence[tuple[str, Result]]) -> lis
     return found
 
 
+@record(eq=False)
+class _Behind:
+    """One stack, where it is the worst, and every cause behind it."""
+
+    key: str
+    result: Result
+    places: list[Reach]
+    causes: list[Cause]
+
+
 def _gate(
     scope: Scope,
     entry: HoldEntry,
     given: Deviation,
     planned: float,
-    behind: Sequence[tuple[str, Result, Sequence[Cause]]],
+    behind: Sequence[_Behind],
 ) -> Gate:
     path = f"{scope.path}.{entry.key}"
     kept = (
@@ -146,16 +170,18 @@ def _gate(
     )
     lowest, highest, by = 0.0, math.inf, ""
     directed = False
-    for key, result, causes in behind:
-        for cause in causes:
+    for one in behind:
+        for cause in one.causes:
             if path not in cause.paths and not (kept and cause.key == kept):
                 continue
             directed = directed or bool(cause.mean)
-            stack = result.stack
-            low, high = span(result.figure, cause, planned, guard_of(given), low=stack.low, high=stack.high)
+            stack = one.result.stack
+            low, high = span(
+                one.result.figure, one.places, cause, planned, guard_of(given), low=stack.low, high=stack.high
+            )
             lowest = max(lowest, low)
             if high < highest:
-                highest, by = high, key
+                highest, by = high, one.key
     assert scope.op is not None
     reading = None if highest == math.inf else highest
     least = lowest
@@ -173,34 +199,39 @@ def _gate(
     )
 
 
-def origins(figure: Figure) -> list[Cause]:
+def origins(places: Sequence[Reach]) -> list[Cause]:
     """Every cause behind a figure, at any of the places it is the worst of, those within high points included."""
     found: dict[Cause, None] = {}
-    for one in alternatives(figure):
-        for push in one.pushes():
+    for one in places:
+        for push in one.pushes:
             found.update(push.cause.of.origins() if push.cause.of is not None else {push.cause: None})
     return list(found)
 
 
 def span(
-    figure: Figure, cause: Cause, planned: float, guard: float, *, low: float | None, high: float | None
+    figure: Figure,
+    places: Sequence[Reach],
+    cause: Cause,
+    planned: float,
+    guard: float,
+    *,
+    low: float | None,
+    high: float | None,
 ) -> tuple[float, float]:
     """(least, largest) reading at which one requirement is met; (0, 0) where none will do.
 
+    places          where the figure is the worst (`reaches`), found once for all its causes
     planned, guard  what the entry of the job file says now, and what its uncertainty adds
     """
     plain = not cause.mean and all(
-        cause not in p.cause.of.origins()
-        for one in alternatives(figure)
-        for p in one.pushes()
-        if p.cause.of is not None
+        cause not in p.cause.of.origins() for one in places for p in one.pushes if p.cause.of is not None
     )
     if plain:
-        factor = room(figure, cause, low=low, high=high)
+        factor = room(places, cause, low=low, high=high)
         return (0.0, math.inf) if factor is None else (0.0, reading_for(planned, guard, factor))
 
     if not cause.mean:
-        return _straight(figure, cause, planned, low=low, high=high)
+        return _straight(figure, places, cause, planned, low=low, high=high)
 
     def excess(reading: float) -> float:
         return worst_excess(with_cause(figure, cause, cause.scaled(reading / planned)), low, high)
@@ -209,12 +240,12 @@ def span(
 
 
 def _straight(
-    figure: Figure, cause: Cause, planned: float, *, low: float | None, high: float | None
+    figure: Figure, places: Sequence[Reach], cause: Cause, planned: float, *, low: float | None, high: float | None
 ) -> tuple[float, float]:
     """The same for a cause without direction that also stands under high points: every excess is straight in the reading."""
     largest = math.inf
-    none = _excesses(with_cause(figure, cause, cause.scaled(0.0)), low, high)
-    for without, with_it in zip(none, _excesses(figure, low, high), strict=True):
+    none = _excesses(reaches(with_cause(figure, cause, cause.scaled(0.0))), low, high)
+    for without, with_it in zip(none, _excesses(places, low, high), strict=True):
         if with_it > without:
             largest = min(largest, -without / (with_it - without) * planned)
         elif without > 0.0:

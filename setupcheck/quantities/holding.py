@@ -5,7 +5,6 @@ from __future__ import annotations
 import cmath
 import math
 import re
-from dataclasses import dataclass
 
 from setupcheck.jobfile.models import Deviation
 from setupcheck.jobfile.names import Ref
@@ -18,9 +17,10 @@ from setupcheck.notation import NotationError, angle
 from setupcheck.quantities.causes import Entry, Towards, Turned, face_lean, length_error, play, run_out, size_error
 from setupcheck.quantities.devices import DEVICES, Device
 from setupcheck.quantities.shop import Body, Datum, Floor
+from setupcheck.record import record
 
 
-@dataclass(slots=True)
+@record(frozen=False)
 class Held:
     """One setup being held: everything the pieces below need."""
 

@@ -12,7 +12,7 @@ from setupcheck.quantities.data_rows import Row
 from setupcheck.quantities.material_data import PER_MILLION
 from setupcheck.record import record
 from setupcheck.shipped import shipped
-from setupcheck.yamlfile import parse, read_text
+from setupcheck.yamlfile import parse_plain, read_text
 
 FILE = "rules/data/classes.yaml"
 ANY_METAL = "any-metal"
@@ -72,7 +72,7 @@ def read_classes(text: str, file: str) -> dict[str, Usual]:
 
     Raises: JobError for broken YAML, SetupcheckError for an entry that is wrong or missing, with its line.
     """
-    tree = parse(text, file)
+    tree = parse_plain(text, file)
     data = tree.data
     if not isinstance(data, dict) or data.get("format") != _FORMAT or not isinstance(data.get("classes"), dict):
         raise SetupcheckError(f"{file}: 'format: {_FORMAT}' and a map 'classes' are needed")

@@ -13,7 +13,7 @@ from setupcheck.physics.materials import CLASSES, Material, Value
 from setupcheck.quantities.data_rows import Row, wrong
 from setupcheck.record import record
 from setupcheck.shipped import shipped
-from setupcheck.yamlfile import parse, read_text
+from setupcheck.yamlfile import parse_plain, read_text
 
 FILE = "rules/data/materials.yaml"
 _FORMAT = 2
@@ -82,7 +82,7 @@ def read_materials(text: str, file: str) -> dict[str, Material]:
 
     Raises: JobError for broken YAML, SetupcheckError for an entry that is wrong or missing, with its line.
     """
-    tree = parse(text, file)
+    tree = parse_plain(text, file)
     data = tree.data
     if not isinstance(data, dict) or data.get("format") != _FORMAT or not isinstance(data.get("materials"), dict):
         raise SetupcheckError(f"{file}: 'format: {_FORMAT}' and a map 'materials' are needed")

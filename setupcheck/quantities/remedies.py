@@ -19,6 +19,7 @@ from setupcheck.quantities.gates import (
     FINE,
     guard_of,
     origins,
+    reaches,
     reading_for,
     room,
     rounded_down,
@@ -225,7 +226,7 @@ def _remedy(loaded: LoadedJob, floor: Floor, result: Result, trials: dict[tuple[
 def _gripped(result: Result) -> str:
     """The entry that says where a shrunk hub bites, where its gap at the shoulder alone puts the stack outside."""
     stack, figure, path = result.stack, result.figure, ""
-    for cause in origins(figure):
+    for cause in origins(reaches(figure)):
         mine = next((p for p in cause.paths if p.endswith(GRIPS_FIRST)), "")
         if mine and not path:
             figure, path = with_cause(figure, cause, cause.scaled(0.0)), mine
@@ -280,7 +281,11 @@ def _recorded(result: Result) -> tuple[tuple[Change, ...], Figure]:
     is not enough; nothing where no typical error of a division is in it.
     """
     stack, figure = result.stack, result.figure
-    each = [(c, row) for c in origins(figure) if any(".divide." in p for p in c.paths) and (row := _row(c)) is not None]
+    each = [
+        (c, row)
+        for c in origins(reaches(figure))
+        if any(".divide." in p for p in c.paths) and (row := _row(c)) is not None
+    ]
     if not each:
         return (), figure
     each = [(cause, row) for cause, row in each if cause.op == each[0][0].op]
@@ -331,7 +336,7 @@ def _cut_back(loaded: LoadedJob, result: Result, *, most: int, bought: bool = Fa
         said = entries[0][1] if entries else None
         if said is None or said.now <= 0.0 or cause.mode == "derived" or (cause.op is None and not bought):
             continue
-        least, largest = span(figure, cause, said.now, said.guard, low=stack.low, high=stack.high)
+        least, largest = span(figure, reaches(figure), cause, said.now, said.guard, low=stack.low, high=stack.high)
         if least == 0.0 and largest < said.now and _down(largest, said.unit) > said.least:
             return (*changes, *_changes(loaded, cause, entries, largest / said.now))
         if len(changes) + 1 >= most or cause.mean or LEAST_KEPT * said.now <= said.least:
@@ -351,7 +356,7 @@ def _by_weight(figure: Figure) -> list[Cause]:
         gone = _scaled(figure, cause, 0.0)
         return full - (worst_excess(gone, None, 0.0) if not figure.signed else worst_excess(gone, 0.0, 0.0))
 
-    return sorted(origins(figure), key=weight, reverse=True)
+    return sorted(origins(reaches(figure)), key=weight, reverse=True)
 
 
 def _changes(loaded: LoadedJob, cause: Cause, entries: list[tuple[str, Stated | None]], factor: float) -> list[Change]:
@@ -427,7 +432,7 @@ def _tried(loaded: LoadedJob, setup: Setup, on: str, like: int) -> Swap | None:
         if isinstance(figure, Open):
             continue
         mine = next((p.cause for p in figure.figure.pushes() if path in p.cause.paths), None)
-        grow = room(figure.figure, mine, low=stack.low, high=stack.high) if mine is not None else None
+        grow = room(reaches(figure.figure), mine, low=stack.low, high=stack.high) if mine is not None else None
         if grow is not None and (allowed := reading_for(planned.now, planned.guard, grow)) > FINE:
             reading = min(reading, allowed)
             cures.append(stack.index)

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass, field, replace
+from dataclasses import field, replace
 
 from setupcheck.errors import JobError, Problem
 from setupcheck.jobfile.models import Flat, Pattern, Round, Surface, Throat, Toothing
@@ -23,7 +23,7 @@ class Datum:
     made_at: int | None
 
 
-@dataclass(slots=True)
+@record(frozen=False)
 class Body:
     """Parts that are one piece by now: every state of every surface, oldest first, in one frame."""
 
@@ -41,7 +41,7 @@ class Body:
         self.states.setdefault((state.part, state.name), []).append(state)
 
 
-@dataclass(slots=True)
+@record(frozen=False)
 class Floor:
     """Everything the walk along the route finds. Filled by `quantities.route`, read-only afterwards."""
 

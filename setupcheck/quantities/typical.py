@@ -10,7 +10,7 @@ from setupcheck.jobfile.setups import Head
 from setupcheck.notation import NotationError, angle_bound, bound, nearest, temperature_difference
 from setupcheck.record import record
 from setupcheck.shipped import shipped
-from setupcheck.yamlfile import Data, Tree, parse, read_text
+from setupcheck.yamlfile import Data, Tree, parse_plain, read_text
 
 FILE = "rules/data/typical.yaml"
 _FORMAT = 2
@@ -66,7 +66,7 @@ def read_table(text: str, file: str) -> dict[tuple[str, str], Typical]:
 
     Raises: JobError for broken YAML, SetupcheckError for an entry that is wrong or missing, with its line.
     """
-    tree = parse(text, file)
+    tree = parse_plain(text, file)
     data = tree.data
     groups = data.get("values") if isinstance(data, dict) and data.get("format") == _FORMAT else None
     if not isinstance(groups, dict):

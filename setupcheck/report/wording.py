@@ -20,6 +20,8 @@ ROUNDING = 1e-6
 
 def clean(text: str) -> str:
     """Text of a job file with control characters and terminal escapes taken out."""
+    if text.isprintable():  # none of them, seen at once
+        return text.strip()
     return "".join(c if unicodedata.category(c)[0] != "C" else " " for c in text).strip()
 
 

@@ -9,24 +9,22 @@ from setupcheck.errors import JobError, RuleBookError
 from setupcheck.notation import nearest, plain
 from setupcheck.record import record
 from setupcheck.rulebook.records import Place
-from setupcheck.yamlfile import parse, read_text
-from setupcheck.yamlfile.tree import Data, Node
+from setupcheck.yamlfile import Data, Tree, parse_plain, read_text
+from setupcheck.yamlfile import Path as Steps
 
 
 @record
 class Entry:
-    """One value of a file with its place; `key` is how it is called in messages."""
+    """One value of a file and the way to it, by which its line is found; `key` is how it is called in messages."""
 
-    file: str
+    tree: Tree
     key: str
     data: Data
-    node: Node
+    steps: Steps = ()
 
-    @property
     def place(self) -> Place:
         """File and line. The line of the key where it has one."""
-        line = self.node.key_place.line or self.node.place.line
-        return Place(self.file, line)
+        return Place(self.tree.file, self.tree.key_place(self.steps).line)
 
     @property
     def is_map(self) -> bool:
@@ -40,18 +38,12 @@ class Entry:
 
     def items(self) -> Iterator[tuple[str, Entry]]:
         """The entries of a map, in file order. Raises RuleBookError when it is no map."""
-        if not isinstance(self.data, dict):
-            raise self.wrong(f"'{self.key}' is no map", "Write keys with their values under it")
-        for key in self.data:
+        for key in self._map():
             yield key, self._inside(key)
 
     def get(self, key: str) -> Entry | None:
         """The entry of that key, or None where it is absent or empty."""
-        if not isinstance(self.data, dict):
-            raise self.wrong(f"'{self.key}' is no map", "Write keys with their values under it")
-        if self.data.get(key) is None:
-            return None
-        return self._inside(key)
+        return self._inside(key) if self._map().get(key) is not None else None
 
     def need(self, key: str) -> Entry:
         """The entry of that key. Raises RuleBookError when it is absent or empty."""
@@ -62,13 +54,15 @@ class Entry:
 
     def only(self, *keys: str) -> None:
         """Refuse keys that are not in the list, with the nearest one that is."""
-        for key, entry in self.items():
+        for key in self._map():
             if key not in keys:
-                raise entry.unknown("key", keys, word=key)
+                raise self._inside(key).unknown("key", keys, word=key)
 
     def text(self, key: str) -> str:
         """The text of a key that has to be there and not blank."""
-        return self.need(key).scalar_text()
+        said = self._map().get(key)
+        plain_text = " ".join(said.split()) if isinstance(said, str) else ""
+        return plain_text or self.need(key).scalar_text()
 
     def text_or(self, key: str, otherwise: str) -> str:
         """The text of a key, or what stands in for it."""
@@ -93,7 +87,8 @@ class Entry:
 
     def wrong(self, problem: str, hint: str) -> RuleBookError:
         """The error that stands at this entry."""
-        return RuleBookError(self.place.file, self.place.line, problem, hint)
+        place = self.place()
+        return RuleBookError(place.file, place.line, problem, hint)
 
     def unknown(self, what: str, choices: Iterable[str], *, word: str | None = None) -> RuleBookError:
         """The error for a name that is not in a closed list, with the nearest one offered."""
@@ -108,16 +103,20 @@ class Entry:
             hint = f"There are {len(known)} to choose from; see rules/README.md"
         return self.wrong(f"there is no {what} '{named}'", hint)
 
+    def _map(self) -> dict[str, Data]:
+        if not isinstance(self.data, dict):
+            raise self.wrong(f"'{self.key}' is no map", "Write keys with their values under it")
+        return self.data
+
     def _inside(self, key: str) -> Entry:
-        assert isinstance(self.data, dict) and isinstance(self.node.inside, dict)
-        return Entry(self.file, key, self.data[key], self.node.inside[key])
+        return Entry(self.tree, key, self._map()[key], (*self.steps, key))
 
 
 def list_of(entry: Entry) -> list[Entry]:
     """The entries of a list. Raises RuleBookError when it is no list."""
-    if not isinstance(entry.data, list) or not isinstance(entry.node.inside, list):
+    if not isinstance(entry.data, list):
         raise entry.wrong(f"'{entry.key}' is no list", "Write one entry a line, each after a dash")
-    return [Entry(entry.file, entry.key, data, node) for data, node in zip(entry.data, entry.node.inside, strict=True)]
+    return [Entry(entry.tree, entry.key, data, (*entry.steps, i)) for i, data in enumerate(entry.data)]
 
 
 def open_file(path: Path, *, shown_as: str | None = None) -> tuple[Entry, bytes]:
@@ -128,8 +127,8 @@ def open_file(path: Path, *, shown_as: str | None = None) -> tuple[Entry, bytes]
     name = shown_as if shown_as is not None else str(path)
     try:
         text = read_text(path)
-        tree = parse(text, name)
+        tree = parse_plain(text, name)
     except JobError as why:
         first = why.problems[0]
         raise RuleBookError(name, first.line, first.problem, first.hint) from None
-    return Entry(name, path.name, tree.data, tree.root), text.encode()
+    return Entry(tree, path.name, tree.data), text.encode()

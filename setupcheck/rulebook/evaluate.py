@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 from collections.abc import Iterable, Sequence
-from dataclasses import replace
 from typing import TYPE_CHECKING
 
 from setupcheck.record import record
@@ -105,39 +104,44 @@ def _at_instance(
     if limits is None:
         return None
 
-    blank = _blank(rule, book, at, house=house, house_name=house_name)
     if fits.answer == "unknown":
-        return _open(blank, Missing(fits.missing))
-    if isinstance(value, Missing):
-        return _open(blank, value)
-    blank = replace(blank, value=value.value, rests_on=value.rests_on)
-    if isinstance(limits, Missing):
-        return _open(blank, limits)
-    judged = _judged(blank, rule, book, facts, at, value=value, limits=limits)
-    return _remedied(judged, rule, book, at)
+        told = _open(Missing(fits.missing))
+    elif isinstance(value, Missing):
+        told = _open(value)
+    elif isinstance(limits, Missing):
+        told = _open(limits, value)
+    else:
+        told = _judged(rule, book, facts, at, value=value, limits=limits)
+    return _finding(rule, book, at, told, house=house.said(house_name) if house is not None else "")
 
 
-def _judged(
-    blank: Finding, rule: Rule, book: Book[S], facts: Facts[S], at: S, *, value: Found, limits: Limits
-) -> Finding:
-    """The finding where value and limits are there."""
-    names = {
-        "op": "" if at.op is None else str(at.op),
-        "name": _called(facts, at, NAME_FACT),
-        "surface": _called(facts, at, SURFACE_FACT),
-    }
+@record
+class _Told:
+    """What judging makes of a finding; everything else of it comes from rule and instance."""
+
+    verdict: Verdict
+    message: str
+    missing: tuple[str, ...] = ()
+    value: float | str | None = None
+    limit: float | tuple[float, float] | tuple[str, ...] | None = None
+    margin: float | None = None
+    rests_on: tuple[str, ...] = ()
+
+
+def _judged(rule: Rule, book: Book[S], facts: Facts[S], at: S, *, value: Found, limits: Limits) -> _Told:
+    """Where value and limits are there."""
     if rule.require.shape == "one_of":
         if not isinstance(value.value, str):
             raise TypeError(f"{rule.quantity} at {at.key!r} is a number, rule {rule.id} compares words")
         allowed = rule.require.allowed
-        names |= {"value": value.value, "limit": " or ".join(allowed)}
-        result = judge_word(value.value, allowed, level=rule.level)
-        return _spoken(replace(blank, limit=allowed), rule, result, names, at)
+        word = judge_word(value.value, allowed, level=rule.level)
+        message = _message(rule, word, facts, at, value=value.value, limit=" or ".join(allowed))
+        return _Told(word, message, _asked(rule, word, at), value.value, allowed, None, value.rests_on)
 
     number = _number(value, rule, rule.quantity, at)
     beside = _beside(rule, book, at, broken=outside(number, low=limits.low, high=limits.high))
     if isinstance(beside, Missing):
-        return _open(blank, beside)
+        return _open(beside, value)
     judgement = judge(
         number,
         low=limits.low,
@@ -147,11 +151,18 @@ def _judged(
         softened=beside.softened,
         standard_uncertainty=beside.uncertainty,
     )
-    value_text, limit_text = shown_pair(number, judgement.limit, unit=blank.unit, digits=blank.digits)
-    names |= {"value": value_text, "limit": limit_text}
-    rests_on = tuple(sorted({*value.rests_on, *limits.rests_on, *beside.rests_on}))
-    blank = replace(blank, limit=judgement.limit, margin=judgement.margin, rests_on=rests_on)
-    return _spoken(blank, rule, judgement.verdict, names, at)
+    unit, digits = book.unit(rule.quantity, at), book.digits(rule.quantity, at)
+    value_text, limit_text = shown_pair(number, judgement.limit, unit=unit, digits=digits)
+    verdict = judgement.verdict
+    return _Told(
+        verdict,
+        _message(rule, verdict, facts, at, value=value_text, limit=limit_text),
+        _asked(rule, verdict, at),
+        number,
+        judgement.limit,
+        judgement.margin,
+        tuple(sorted({*value.rests_on, *limits.rests_on, *beside.rests_on})),
+    )
 
 
 @record
@@ -198,35 +209,40 @@ def _called(facts: Facts[S], at: S, name: str) -> str:
     return fact if isinstance(fact, str) and fact else at.key or at.kind
 
 
-def _remedied(finding: Finding, rule: Rule, book: Book[S], at: S) -> Finding:
-    """What to do with this job's own numbers, where a quantity says it."""
-    if not rule.remedy_from or finding.verdict not in ("warn", "fail"):
-        return finding
+def _remedy(rule: Rule, book: Book[S], at: S, result: Verdict) -> str:
+    """What to do; with this job's own numbers, where a quantity says it."""
+    if not rule.remedy_from or result not in ("warn", "fail"):
+        return rule.remedy
     said = read(book, rule.remedy_from, at)
-    return replace(finding, remedy=said.value) if isinstance(said, Found) and isinstance(said.value, str) else finding
+    return said.value if isinstance(said, Found) and isinstance(said.value, str) else rule.remedy
 
 
-def _spoken(blank: Finding, rule: Rule, result: Verdict, names: dict[str, str], at: S) -> Finding:
-    """Verdict and message put in; a broken rule that asks for an entry of the job names it."""
+def _message(rule: Rule, result: Verdict, facts: Facts[S], at: S, *, value: str, limit: str) -> str:
     template = rule.message_when_met if result == "pass" and rule.message_when_met else rule.message
-    missing: tuple[str, ...] = ()
-    if result == "open" and rule.asks_for:
-        path = f"{at.path}{rule.asks_for}" if rule.asks_for.startswith(".") else rule.asks_for
-        missing = (path.lstrip("."),)
-    return replace(blank, verdict=result, message=fill(template, names), missing=missing)
+    names = {"value": value, "limit": limit, "op": "" if at.op is None else str(at.op)}
+    for field, fact in (("name", NAME_FACT), ("surface", SURFACE_FACT)):
+        if f"{{{field}}}" in template:
+            names[field] = _called(facts, at, fact)
+    return fill(template, names)
 
 
-def _open(blank: Finding, missing: Missing) -> Finding:
-    return replace(
-        blank,
-        verdict="open",
-        missing=missing.missing,
-        message=cannot_tell(missing.missing, missing.because),
-    )
+def _asked(rule: Rule, result: Verdict, at: S) -> tuple[str, ...]:
+    """The entry of the job that a broken rule asks for."""
+    if result != "open" or not rule.asks_for:
+        return ()
+    path = f"{at.path}{rule.asks_for}" if rule.asks_for.startswith(".") else rule.asks_for
+    return (path.lstrip("."),)
 
 
-def _blank(rule: Rule, book: Book[S], at: S, *, house: HouseLimit | None, house_name: str) -> Finding:
-    """Everything of a finding that is known before judging. Its verdict is open until something is judged."""
+def _open(missing: Missing, value: Found | None = None) -> _Told:
+    """Nothing could be judged. value: what is known all the same."""
+    message = cannot_tell(missing.missing, missing.because)
+    if value is None:
+        return _Told("open", message, missing.missing)
+    return _Told("open", message, missing.missing, value.value, rests_on=value.rests_on)
+
+
+def _finding(rule: Rule, book: Book[S], at: S, told: _Told, *, house: str) -> Finding:
     return Finding(
         rule=rule.id,
         title=rule.title,
@@ -234,19 +250,20 @@ def _blank(rule: Rule, book: Book[S], at: S, *, house: HouseLimit | None, house_
         key=at.key,
         op=at.op,
         line=at.line,
-        verdict="open",
+        verdict=told.verdict,
         quantity=rule.quantity,
-        value=None,
-        limit=None,
-        margin=None,
+        value=told.value,
+        limit=told.limit,
+        margin=told.margin,
         unit=book.unit(rule.quantity, at),
         digits=book.digits(rule.quantity, at),
-        missing=(),
-        message="",
-        remedy=rule.remedy,
+        missing=told.missing,
+        message=told.message,
+        remedy=_remedy(rule, book, at, told.verdict),
         why=rule.why,
         sources=rule.sources,
         evidence=rule.evidence,
-        house=house.said(house_name) if house is not None else "",
+        rests_on=told.rests_on,
+        house=house,
         cautions=rule.cautions,
     )

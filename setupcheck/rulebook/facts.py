@@ -54,6 +54,9 @@ class Applies:
     missing: tuple[str, ...] = ()
 
 
+_YES, _NO = Applies("yes"), Applies("no")
+
+
 def applies(conditions: Sequence[Condition], facts: Facts[S], at: S) -> Applies:
     """AND over the conditions, OR over the values of each. One clear no decides, whatever else is unknown.
 
@@ -65,8 +68,8 @@ def applies(conditions: Sequence[Condition], facts: Facts[S], at: S) -> Applies:
         if isinstance(fact, Unknown):
             missing.append(fact.path)
         elif fact is None or not any(_same(fact, value) for value in condition.values):
-            return Applies("no")
-    return Applies("unknown", tuple(dict.fromkeys(missing))) if missing else Applies("yes")
+            return _NO
+    return Applies("unknown", tuple(dict.fromkeys(missing))) if missing else _YES
 
 
 def _same(fact: str | float | bool, value: str | float | bool) -> bool:

@@ -84,4 +84,4 @@ def _limit(entry: Entry, rulebook: RuleBook, quantities: Mapping[str, Quantity])
     when = entry.text("when")
     if not is_date(when):
         raise entry.need("when").wrong(f"'{when}' is not a date", "Write year-month-day, as in 2027-01-15")
-    return HouseLimit(rule_id, number.value, number.text, entry.text("who"), entry.text("why"), when, entry.place)
+    return HouseLimit(rule_id, number.value, number.text, entry.text("who"), entry.text("why"), when, entry.place())

@@ -153,7 +153,7 @@ def _rule(entry: Entry, family: str, names: _Names) -> Rule:
         remedy=entry.text("remedy"),
         why=entry.text("why"),
         sources=_sources(entry.need("sources"), names),
-        place=entry.place,
+        stands=entry.place,
         applies_when=_conditions(entry.get("applies_when"), names),
         message_when_met=_message(met) if met is not None else "",
         house_may_change=_house_span(entry.get("house_may_change"), require, quantity),
@@ -281,7 +281,7 @@ def _caution(entry: Entry, names: _Names) -> Caution:
         text=entry.text("text"),
         trigger=trigger,
         sources=_sources(entry.need("sources"), names),
-        place=entry.place,
+        stands=entry.place,
     )
 
 

@@ -130,12 +130,12 @@ def read(book: Book[S], name: str, at: S) -> Found | Missing | None:
         raise TypeError(f"{name} at {at.key!r} is neither known nor open: {got!r}")
     value = got.value
     if isinstance(value, str):
-        return Found(value, tuple(sorted(got.rests_on)))
+        return Found(value, tuple(sorted(got.rests_on)) if got.rests_on else ())
     if isinstance(value, Real) and not isinstance(value, bool):
         number = float(value)
         if not math.isfinite(number):
             return Missing((), f"{name} has no finite value")
-        return Found(number, tuple(sorted(got.rests_on)))
+        return Found(number, tuple(sorted(got.rests_on)) if got.rests_on else ())
     raise TypeError(f"{name} at {at.key!r} is neither a number nor a word: {value!r}")
 
 

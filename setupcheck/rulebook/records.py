@@ -5,8 +5,7 @@ Plain frozen data. Limits are in base units (mm, rad, degC, N, MPa, s); shares a
 
 from __future__ import annotations
 
-from collections.abc import Mapping
-from dataclasses import dataclass
+from collections.abc import Callable, Mapping
 from typing import Literal
 
 from setupcheck.record import record
@@ -34,7 +33,7 @@ GENERIC_FIELDS = ("value", "limit", "surface", "op", "name")
 """The only fields a message may hold."""
 
 
-@dataclass(frozen=True, slots=True, order=True)
+@record
 class Place:
     """A line of a rule file."""
 
@@ -118,6 +117,7 @@ class Rule:
     """One rule. It has no scope of its own: it runs once for every instance of its quantity.
 
     remedy_from  a quantity of words that says what to do with this job's numbers; `remedy` where it has no value
+    stands       finds its line in the rule file, which hardly any run asks for
     """
 
     id: str
@@ -130,7 +130,7 @@ class Rule:
     remedy: str
     why: str
     sources: tuple[Source, ...]
-    place: Place
+    stands: Callable[[], Place]
     applies_when: tuple[Condition, ...] = ()
     message_when_met: str = ""
     house_may_change: HouseSpan | None = None
@@ -140,6 +140,11 @@ class Rule:
     asks_for: str = ""
     remedy_from: str = ""
     cautions: tuple[str, ...] = ()
+
+    @property
+    def place(self) -> Place:
+        """The line it begins at."""
+        return self.stands()
 
     @property
     def evidence(self) -> str:
@@ -166,7 +171,12 @@ class Caution:
     text: str
     trigger: Trigger
     sources: tuple[Source, ...]
-    place: Place
+    stands: Callable[[], Place]
+
+    @property
+    def place(self) -> Place:
+        """The line it begins at."""
+        return self.stands()
 
 
 @record

@@ -3,9 +3,9 @@
 Leaf package: standard library and PyYAML only. Every refusal is a JobError that shows the lines.
 """
 
-from setupcheck.yamlfile.reader import parse
+from setupcheck.yamlfile.reader import parse, parse_plain
 from setupcheck.yamlfile.scalars import Scalar, yaml11_surprise
 from setupcheck.yamlfile.source import read_text
 from setupcheck.yamlfile.tree import Data, Node, Path, Place, Tree
 
-__all__ = ["Data", "Node", "Path", "Place", "Scalar", "Tree", "parse", "read_text", "yaml11_surprise"]
+__all__ = ["Data", "Node", "Path", "Place", "Scalar", "Tree", "parse", "parse_plain", "read_text", "yaml11_surprise"]

@@ -7,18 +7,19 @@ read, and nothing is nested by recursion, so that no depth of brackets can break
 from __future__ import annotations
 
 import re
-from dataclasses import dataclass, replace
+from dataclasses import replace
+from functools import cache
 from typing import Protocol
 
 import yaml
 
 from setupcheck.errors import JobError, Problem
+from setupcheck.record import record
 from setupcheck.yamlfile import limits
+from setupcheck.yamlfile.plain import LOADER, plain_data
 from setupcheck.yamlfile.scalars import LookAlike, Scalar, plain_scalar
 from setupcheck.yamlfile.syntax import CommaRun, odd_characters, syntax_problem, without_odd_characters
 from setupcheck.yamlfile.tree import BEGINS_AN_ENTRY, Data, Node, Path, Place, Tree
-
-LOADER = getattr(yaml, "CBaseLoader", yaml.BaseLoader)  # libyaml where it is installed: ten times faster
 
 
 def parse(text: str, file: str, *, collect: bool = False, if_empty: str = "Write key: value on its lines") -> Tree:
@@ -49,7 +50,18 @@ def parse(text: str, file: str, *, collect: bool = False, if_empty: str = "Write
     return Tree(walk.data, file, lines, tuple(wrong), walk.root)
 
 
-@dataclass(slots=True)
+def parse_plain(text: str, file: str) -> Tree:
+    """The same as `parse` for a file that is hardly ever wrong: places are found only when one is asked for.
+
+    Raises: JobError as `parse`.
+    """
+    data = plain_data(text)
+    if data is None:
+        return parse(text, file)
+    return Tree(data, file, text.split("\n"), (), cache(lambda: parse(text, file).root))
+
+
+@record(frozen=False)
 class _Open:
     """A list or map that is being filled. key: of the value to come (a map), None while a key is awaited."""
 

@@ -15,11 +15,12 @@ from setupcheck.yamlfile.limits import MOST_DIGITS
 Scalar = str | int | float | bool | None
 
 _NUMBER = re.compile(r"[+-]?(?:(?P<whole>[0-9]+)|(?:[0-9]+\.[0-9]*|\.[0-9]+|[0-9]+(?=[eE]))(?:[eE][+-][0-9]{1,4})?)")
-_LEADING_ZERO = re.compile(r"([+-]?)0+([0-9][0-9.]*)")
-_GROUPED = re.compile(r"[+-]?[0-9]+(?:_[0-9]*)+(?:\.[0-9_]*)?")
-_OTHER_BASE = re.compile(r"[+-]?0([xob])([0-9a-fA-F_]+)", re.IGNORECASE)
-_NOT_FINITE = re.compile(r"[+-]?\.?(?:nan|inf|infinity)", re.IGNORECASE)
-_CLOCK = re.compile(r"([+-]?)([0-9]+):([0-9]{1,2})(?::([0-9]{1,2}))?(?:\.[0-9]*)?")
+# What hardly any file holds is compiled where it is first needed.
+_LEADING_ZERO = r"([+-]?)0+([0-9][0-9.]*)"
+_GROUPED = r"[+-]?[0-9]+(?:_[0-9]*)+(?:\.[0-9_]*)?"
+_OTHER_BASE = r"(?i)[+-]?0([xob])([0-9a-fA-F_]+)"
+_NOT_FINITE = r"(?i)[+-]?\.?(?:nan|inf|infinity)"
+_CLOCK = r"([+-]?)([0-9]+):([0-9]{1,2})(?::([0-9]{1,2}))?(?:\.[0-9]*)?"
 _TRUE = frozenset({"yes", "on", "y", "true"})
 _FALSE = frozenset({"no", "off", "n", "false"})
 
@@ -47,14 +48,14 @@ def plain_scalar(text: str) -> Scalar | LookAlike:
     first = text[0]
     if not (first.isascii() and (first.isdigit() or first in "+-.nNiI")):
         return text
-    if not first.isdigit() and _NOT_FINITE.fullmatch(text):
+    if not first.isdigit() and re.fullmatch(_NOT_FINITE, text):
         return LookAlike(f"'{text}' is not a number", "Write a finite number, or leave the key away if it is not known")
     found = _NUMBER.fullmatch(text)
     if not found:
         return _other_spelling(text)
-    if sum(character.isdigit() for character in text) > MOST_DIGITS:
+    if len(text) > MOST_DIGITS and sum(character.isdigit() for character in text) > MOST_DIGITS:
         return LookAlike("the number has too many digits", "Write it shorter, or in quotes if it is text")
-    if zeros := _LEADING_ZERO.fullmatch(text):
+    if "0" in text[:2] and (zeros := re.fullmatch(_LEADING_ZERO, text)):
         sign, rest = zeros.groups()
         return LookAlike(f"'{text}' begins with a zero", f"Write {sign}{rest}, or '{text}' in quotes if it is text")
     if found["whole"]:
@@ -78,7 +79,7 @@ def yaml11_surprise(text: str) -> str | None:
         return f"{word} is text here; write false"
     if word in ("Null", "NULL"):
         return f"{word} is text here; leave the value away"
-    if found := _CLOCK.fullmatch(word):
+    if found := re.fullmatch(_CLOCK, word):
         sign, degrees, minutes, seconds = found.groups()
         angle = f"{sign}{int(degrees[:9])}deg {int(minutes)}'" + (f' {int(seconds)}"' if seconds else "")
         return f"{word} is read as text; write {angle}"
@@ -88,11 +89,11 @@ def yaml11_surprise(text: str) -> str | None:
 def _other_spelling(text: str) -> str | LookAlike:
     if len(text) > 2 * MOST_DIGITS:
         return text
-    if "_" in text and _GROUPED.fullmatch(text):
+    if "_" in text and re.fullmatch(_GROUPED, text):
         return LookAlike(
             f"'{text}' has an underscore in its number", f"Write {text.replace('_', '')}, or use quotes if it is text"
         )
-    if text.lstrip("+-").startswith("0") and (found := _OTHER_BASE.fullmatch(text)):
+    if text.lstrip("+-").startswith("0") and (found := re.fullmatch(_OTHER_BASE, text)):
         base = {"x": 16, "o": 8, "b": 2}[found[1].lower()]
         try:
             value = int(found[2], base)

@@ -55,7 +55,9 @@ def _bytes_of(file: str) -> bytes:
         if found.st_size > LARGEST_FILE:
             raise _too_large(file, found.st_size)
         with Path(file).open("rb") as stream:
-            raw = stream.read(LARGEST_FILE + 1)
+            raw = stream.read(found.st_size + 1)
+            if len(raw) > found.st_size:  # it grew, or its size cannot be known beforehand
+                raw += stream.read(LARGEST_FILE + 1 - len(raw))
     except FileNotFoundError:
         raise _refusal(file, "there is no such file", "Check the name and the directory") from None
     except PermissionError:

@@ -4,17 +4,17 @@ from __future__ import annotations
 
 import re
 from collections.abc import Sequence
-from dataclasses import dataclass
 
 import yaml
 
 from setupcheck.errors import Problem
+from setupcheck.record import record
 from setupcheck.yamlfile.limits import MOST_PROBLEMS
 from setupcheck.yamlfile.tree import Path, Place
 
 # Not printable, or taken for a line end by YAML 1.1 (next line, line and paragraph separator), or turning the text
 # around on the screen, which can hide what a line says.
-_ODD = re.compile(
+ODD = re.compile(
     "[\x00-\x08\x0b-\x1f\x7f-\x9f\xad\u2028\u2029\u200b-\u200f\u202a-\u202e\u2060-\u2069\ufeff\ufffe\uffff"
     "\ud800-\udfff]"
 )
@@ -75,7 +75,7 @@ def odd_characters(lines: Sequence[str]) -> list[Problem]:
                     "", number, column, tab.end() - column + 1, "a tab stands in the indentation", "Indent with spaces"
                 )
             )
-        if not line.isprintable() and (odd := _ODD.search(line)):
+        if not line.isprintable() and (odd := ODD.search(line)):
             code = f"U+{ord(odd[0]):04X}"
             found.append(
                 Problem("", number, odd.start() + 1, 1, f"the character {code} does not belong in a job", "Delete it")
@@ -90,10 +90,10 @@ def without_odd_characters(text: str) -> str:
 
     Tabs become spaces: those before a line are reported, all others are harmless, and the parsers differ about them.
     """
-    return _ODD.sub("?", text).replace("\t", " ")
+    return ODD.sub("?", text).replace("\t", " ")
 
 
-@dataclass(slots=True)
+@record(frozen=False)
 class CommaRun:
     """Values in brackets that are parted by commas straight between digits: `0,5 um` or `2.0,1.0,0.3`.
 

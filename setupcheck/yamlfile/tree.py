@@ -2,8 +2,8 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterable, Sequence
-from dataclasses import dataclass, field
+from collections.abc import Callable, Iterable, Sequence
+from dataclasses import field
 from typing import TypeAlias
 
 from setupcheck.errors import Problem
@@ -26,7 +26,7 @@ class Place:
     length: int
 
 
-@dataclass(slots=True)
+@record(frozen=False)
 class Node:
     """One value with its place, the place of its key (of itself, in a list), and what is inside it."""
 
@@ -43,14 +43,19 @@ class Tree:
     file      name as given, for messages
     lines     the text, line by line
     problems  what is wrong in values that could be read all the same (only with `collect=True`)
-    root      places, by the structure of the data
+    places    of everything, by the structure of the data; or what finds them when the first is asked for
     """
 
     data: Data
     file: str
     lines: Sequence[str]
     problems: tuple[Problem, ...]
-    root: Node = field(repr=False)
+    places: Node | Callable[[], Node] = field(repr=False)
+
+    @property
+    def root(self) -> Node:
+        """Places, by the structure of the data."""
+        return self.places if isinstance(self.places, Node) else self.places()
 
     def place(self, path: Path) -> Place:
         """Where a value stands. Steps that only a model has (a union tag, a field that a plain value stands for) and

@@ -15,7 +15,7 @@ from setupcheck.ledger.causes import Cause
 from setupcheck.ledger.combine import Draws, combine
 from setupcheck.ledger.figures import OverATurn, alternatives
 from setupcheck.ledger.route import Pattern, Scatter
-from setupcheck.quantities.gates import origins, room, span, with_cause, worst_excess
+from setupcheck.quantities.gates import origins, reaches, room, span, with_cause, worst_excess
 
 from .drawn_jobs import few
 
@@ -170,12 +170,12 @@ def test_a_gate_of_every_cause_just_holds(figure: OverATurn, width: float) -> No
     middle = figure.base()
     low, high = middle - width, middle + width
     assert alternatives(figure) == (figure,)
-    for cause in origins(figure):
+    for cause in origins(reaches(figure)):
         planned = abs(cause.mean) or cause.high
         guard = 3.0 * cause.spread if cause.law == "ring" else 0.0
         if not planned or cause == RADIAL or cause.law in ("gauss", "blur", "clearance-ring", "rectangle"):
             continue  # no dial reading: scatter of each gap, or a law with two sizes
-        least, most = span(figure, cause, planned, guard, low=low, high=high)
+        least, most = span(figure, reaches(figure), cause, planned, guard, low=low, high=high)
         for reading in {least, most} - {0.0, math.inf}:
             at = with_cause(figure, cause, cause.scaled(reading / planned))
             assert worst_excess(at, low, high) <= 1e-9
@@ -190,5 +190,5 @@ def test_room_of_a_cause_is_what_the_worst_case_leaves(figure: OverATurn) -> Non
     mine = next((p for p in figure.pushes() if not p.known and p.up > 1e-6 and p.down > 1e-6), None)
     if mine is None:
         return
-    grow = room(figure, mine.cause, low=worst.low - mine.down, high=worst.high + 2.0 * mine.up)
+    grow = room(reaches(figure), mine.cause, low=worst.low - mine.down, high=worst.high + 2.0 * mine.up)
     assert grow == pytest.approx(2.0, rel=1e-6)

@@ -62,9 +62,9 @@ READ = {
 (size classes and limits, slot widths, the room, everything inside `heat` and `depth_from`)."""
 
 RECORDS = {
-    name: record
+    record.__name__: record  # not the name it is found under: some have a second one
     for module in (models, properties, setups, heating)
-    for name, record in vars(module).items()
+    for record in vars(module).values()
     if inspect.isclass(record)
     and issubclass(record, BaseModel)
     and record.__module__ == module.__name__
