@@ -98,7 +98,11 @@ WARNED: Mapping[str, tuple[str, Mapping[str, tuple[Change, ...]]]] = {
         "HEAT-016",
         {
             COUPLING: (("by: oven,", "by: flame,"),),
-            SPINDLE: (("material: CuSn12Ni2-C", "material: S355J2"), ("by: oven,", "by: flame,"), ("hub: 185", "hub: 250")),
+            SPINDLE: (
+                ("material: CuSn12Ni2-C", "material: S355J2"),
+                ("by: oven,", "by: flame,"),
+                ("hub: 185", "hub: 250"),
+            ),
         },
     ),
 }

@@ -19,7 +19,6 @@ from dataclasses import replace
 
 import pytest
 
-from setupcheck.quantities.book import Open
 from setupcheck.quantities.strength import SLIP_FACTOR
 
 from .joint_jobs import INCH, PSI, FitJob, Metal
@@ -317,6 +316,4 @@ def test_own_ring_heat_to_join_and_warmth_that_frees_it() -> None:
 
 
 def test_a_joint_of_one_metal_is_not_freed_by_warmth() -> None:
-    answer = FitJob(diameter=40, outside=80, interference=0.05, **metal(207)).answer("fit.loosens_at")
-    assert isinstance(answer, Open)
-    assert "does not loosen" in answer.because
+    assert FitJob(diameter=40, outside=80, interference=0.05, **metal(207)).answer("fit.loosens_at") is None

@@ -23,7 +23,9 @@ def heat(said: str, *more: tuple[str, str]) -> str:
     return changed((HEAT, f"heat: {{{said}}}"), *more)
 
 
-COLD_ALONE = "shaft: -196 degC, cold_by: liquid-nitrogen, cold_error: 3 K, carry: 10 s, room_volume: 60 m3, coolant: 4 l"
+COLD_ALONE = (
+    "shaft: -196 degC, cold_by: liquid-nitrogen, cold_error: 3 K, carry: 10 s, room_volume: 60 m3, coolant: 4 l"
+)
 
 
 # -- the error of the cold and what the shaft gains
@@ -134,7 +136,9 @@ def test_much_too_little_cold_is_told_to_warm_the_hub_too() -> None:
     assert "fail" == found.verdict
     assert found.remedy.startswith("Cold alone does not do it: warm the hub until ")
     wanted = float(found.remedy.split("until ")[1].split(" degC")[0])
-    warmed = heat(f"hub: {wanted + 6.0} degC, by: oven, oven_error: 5 degC, {COLD_ALONE}".replace("carry: 10 s", "carry: 1 s"))
+    warmed = heat(
+        f"hub: {wanted + 6.0} degC, by: oven, oven_error: 5 degC, {COLD_ALONE}".replace("carry: 10 s", "carry: 1 s")
+    )
     assert "pass" == finding(warmed, "HEAT-003").verdict
 
 
@@ -158,7 +162,9 @@ def test_the_cautions_of_heat_are_not_printed_where_nothing_is_hot() -> None:
     ],
 )
 @pytest.mark.parametrize("room", [5.0, 20.0, 32.0])
-def test_both_together_are_held_against_interference_and_play_and_heat_001_says_the_same(said: str, room: float) -> None:
+def test_both_together_are_held_against_interference_and_play_and_heat_001_says_the_same(
+    said: str, room: float
+) -> None:
     for journal in (("room: 20 degC", f"room: {room} degC"),), (("room: 20 degC", f"room: {room} degC"), EASY):
         text = heat(said, *journal)
         opens = number(text, "heat.opens_by_heat") + number(text, "heat.opens_by_cold")
@@ -184,7 +190,11 @@ def test_bright_metal_keeps_its_heat_longer() -> None:
     assert 0.0 < number(text, "heat.carry_loss_bright") < number(text, "heat.carry_loss")
     assert number(text, "heat.carry_allowed_bright") > number(text, "heat.carry_allowed") > 0.0
     assert number(text, "heat.carry_until_bite_bright") > number(text, "heat.carry_until_bite")
-    assert number(text, "heat.carry_until_bite") > number(text, "heat.carry_allowed") > number(text, "heat.carry_with_spare")
+    assert (
+        number(text, "heat.carry_until_bite")
+        > number(text, "heat.carry_allowed")
+        > number(text, "heat.carry_with_spare")
+    )
 
 
 @pytest.mark.parametrize(
@@ -258,7 +268,16 @@ def test_the_window_of_a_chilled_pair_counts_the_coldest_shaft() -> None:
 
 def test_a_joint_that_is_no_shrink_fit_has_none_of_it() -> None:
     pressed = changed(("by: shrink", "by: press"), (f"      {HEAT}\n", ""))
-    for name in ("shaft_at", "shaft_gain", "must_open", "opens_by_heat", "opens_by_cold", "carry", "carry_allowed", "room"):
+    for name in (
+        "shaft_at",
+        "shaft_gain",
+        "must_open",
+        "opens_by_heat",
+        "opens_by_cold",
+        "carry",
+        "carry_allowed",
+        "room",
+    ):
         assert answer(pressed, f"heat.{name}") is None, name
 
 

@@ -13,7 +13,10 @@ JOB = changed(
     ("units: mm", "units: in"),
     ("room: 20 degC", "room: 68 degF"),
     ("diameter: 60 H6, from: 0, to: 30", "diameter: {nominal: 2.0, lower: 0, upper: 0.0006}, from: 0, to: 1.2"),
-    ("diameter: 60 r6, from: 0, to: 30, hole: 20", "diameter: {nominal: 2.0, lower: 0.0012, upper: 0.0017}, from: 0, to: 1.2"),
+    (
+        "diameter: 60 r6, from: 0, to: 30, hole: 20",
+        "diameter: {nominal: 2.0, lower: 0.0012, upper: 0.0017}, from: 0, to: 1.2",
+    ),
     ("on_circle: 120, at: 20, width: 20, module: 2", "on_circle: 4.8, at: 0.8, width: 0.8, module: 2 mm"),
     ("diameter: 90, from: 0, to: 10", "diameter: 3.5, from: 0, to: 0.4"),
     ("at: 0, facing: +z, diameter: 80", "at: 0, facing: +z, diameter: 3.0"),
