@@ -47,7 +47,7 @@ def as_listed(given: object) -> str:
     return notation.quoted(given)
 
 
-def _scalar(given: object) -> Given:
+def scalar(given: object) -> Given:
     """The text or number itself; a list, a map or true/false is refused in words."""
     if isinstance(given, bool) or not isinstance(given, str | int | float):
         kind = {bool: "true or false", list: "a list", dict: "a map", type(None): "empty"}.get(type(given), "no value")
@@ -56,22 +56,22 @@ def _scalar(given: object) -> Given:
 
 
 def _plain(read: Callable[[Given], float]) -> BeforeValidator:
-    return BeforeValidator(lambda given: read(_scalar(given)))
+    return BeforeValidator(lambda given: read(scalar(given)))
 
 
 def _size(given: object, info: ValidationInfo) -> float:
-    return notation.length(_scalar(given), units=units_of(info))
+    return notation.length(scalar(given), units=units_of(info))
 
 
 def _positive_size(given: object, info: ValidationInfo) -> float:
-    value = notation.length(_scalar(given), units=units_of(info))
+    value = notation.length(scalar(given), units=units_of(info))
     if value <= 0.0:
         raise ValueError(f"{as_listed(given)} is not a size. Write a length above zero")
     return value
 
 
 def _bound(given: object, info: ValidationInfo) -> float:
-    return notation.bound(_scalar(given), units=units_of(info), unit_needed=True)
+    return notation.bound(scalar(given), units=units_of(info), unit_needed=True)
 
 
 def _division(given: object, info: ValidationInfo) -> float:
@@ -82,7 +82,7 @@ def _division(given: object, info: ValidationInfo) -> float:
 
 
 def _signed_error(given: object, info: ValidationInfo) -> float:
-    return notation.length(_scalar(given), units=units_of(info), unit_needed=True)
+    return notation.length(scalar(given), units=units_of(info), unit_needed=True)
 
 
 def _range(given: object, info: ValidationInfo) -> tuple[float, float]:
@@ -98,7 +98,7 @@ def _range(given: object, info: ValidationInfo) -> tuple[float, float]:
 
 
 def _amount(given: object, info: ValidationInfo) -> Amount:
-    return notation.amount(_scalar(given), units=units_of(info))
+    return notation.amount(scalar(given), units=units_of(info))
 
 
 def _amounts(given: object, info: ValidationInfo) -> tuple[Amount, Amount]:
@@ -115,7 +115,7 @@ def _amounts(given: object, info: ValidationInfo) -> tuple[Amount, Amount]:
 def _service(given: object, info: ValidationInfo) -> tuple[float, float]:
     if not isinstance(given, list) or len(given) != 2:
         raise ValueError(f"{as_listed(given)} is not a span of temperatures. Write [5 degC, 45 degC]")
-    low, high = (notation.temperature(_scalar(g)) for g in given)
+    low, high = (notation.temperature(scalar(g)) for g in given)
     if low > high:
         raise ValueError(f"{as_listed(given)} runs from warm to cold. Write the colder one first")
     return low, high
@@ -129,7 +129,7 @@ def _whole(given: object) -> object:
 
 def _angle_bound(given: object) -> float:
     try:
-        return notation.angle_bound(_scalar(given))
+        return notation.angle_bound(scalar(given))
     except NotationError as why:
         if why.hint.startswith("Write it as in"):  # errors of angles are small: an example in degrees would mislead
             raise NotationError(why.problem, 'Write it as in ±5"') from None
@@ -140,7 +140,7 @@ def _angle_bound(given: object) -> float:
 
 
 def _tilt(given: object) -> float:
-    tilt = notation.angle(_scalar(given))
+    tilt = notation.angle(scalar(given))
     if tilt < 0.0:
         size = str(given).strip().lstrip("-\u2212\u2013 ")
         raise ValueError(f"a tilt has no sign. Write {size}, and under leans where the nose goes")
@@ -181,7 +181,7 @@ def _housing(given: object, info: ValidationInfo) -> object:
     if given is None or _MATERIAL_NUMBER.fullmatch(str(given)):
         return given
     try:
-        notation.length(_scalar(given), units=units_of(info))
+        notation.length(scalar(given), units=units_of(info))
     except NotationError:
         return given
     raise ValueError(f"{notation.quoted(given)} is a length, not a material. {advice}")
@@ -221,7 +221,7 @@ Expansion = Annotated[float, _plain(notation.expansion), TEXT]
 """A thermal expansion [1/K]; the unit must be written."""
 Conductivity = Annotated[float, _plain(notation.conductivity), TEXT]
 """A heat conductivity [W/mK]; the unit must be written."""
-Roughness = Annotated[notation.Roughness, BeforeValidator(lambda given: notation.roughness(_scalar(given))), TEXT]
+Roughness = Annotated[notation.Roughness, BeforeValidator(lambda given: notation.roughness(scalar(given))), TEXT]
 """A roughness with its figure, Ra or Rz."""
 Duration = Annotated[float, _plain(notation.duration), TEXT]
 Force = Annotated[float, _plain(notation.force), TEXT]

@@ -5,8 +5,9 @@ from __future__ import annotations
 import math
 
 from setupcheck.division.methods import circles_that_fit
-from setupcheck.jobfile.models import Mesh, Toothing
+from setupcheck.jobfile.models import Toothing
 from setupcheck.jobfile.setups import Join, Setup
+from setupcheck.jobfile.worm import Mesh
 from setupcheck.notation import show, show_angle
 from setupcheck.physics.heating import planned_heat
 from setupcheck.physics.materials import expansion_for

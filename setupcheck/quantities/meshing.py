@@ -2,7 +2,8 @@
 
 from __future__ import annotations
 
-from setupcheck.jobfile.models import Mesh, Toothing
+from setupcheck.jobfile.models import Toothing
+from setupcheck.jobfile.worm import Mesh
 from setupcheck.quantities.book import Open, Quantity
 from setupcheck.quantities.drive import middle
 from setupcheck.quantities.judged import Result
