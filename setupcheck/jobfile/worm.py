@@ -65,7 +65,6 @@ def _above_zero(given: Dimension, info: ValidationInfo) -> Dimension:
     return given
 
 
-
 Travel = Annotated[
     Dimension,
     AfterValidator(_above_zero),

@@ -9,18 +9,36 @@ from setupcheck.record import record
 from setupcheck.worm.closing import INCH
 from setupcheck.worm.geometry import above_zero, not_below_zero
 
-MODULES = (
-    (0.3, 0.4, 0.5, 0.6, 0.7, 0.8, 0.9)
-    + (1.0, 1.125, 1.25, 1.375, 1.5, 1.75, 2.0, 2.25, 2.5, 2.75, 3.0, 3.5, 4.0, 4.5, 5.0, 5.5, 6.0, 6.5, 7.0, 8.0, 9.0)
-    + (10.0, 11.0, 12.0, 14.0, 16.0, 18.0, 20.0, 22.0, 25.0, 28.0, 32.0)
+FINE = (0.3, 0.4, 0.5, 0.6, 0.7, 0.8, 0.9)
+MIDDLE = (
+    1.0,
+    1.125,
+    1.25,
+    1.375,
+    1.5,
+    1.75,
+    2.0,
+    2.25,
+    2.5,
+    2.75,
+    3.0,
+    3.5,
+    4.0,
+    4.5,
+    5.0,
+    5.5,
+    6.0,
+    6.5,
+    7.0,
+    8.0,
+    9.0,
 )
+MODULES = (*FINE, *MIDDLE, 10.0, 11.0, 12.0, 14.0, 16.0, 18.0, 20.0, 22.0, 25.0, 28.0, 32.0)
 """ISO 54, both series, and the finer ones that older lists had (from memory)."""
 WORM_MODULES = (1.6, 3.15, 6.3, 12.5)
 """Axial modules of worms in the steps of preferred numbers that ISO 54 does not have; DIN 780-2 (from memory)."""
-DIAMETRAL_PITCHES = (
-    (1.0, 1.25, 1.5, 1.75, 2.0, 2.25, 2.5, 3.0, 3.5, 4.0, 5.0, 6.0, 7.0, 8.0, 9.0, 10.0, 12.0, 14.0, 16.0, 18.0, 20.0)
-    + (22.0, 24.0, 26.0, 28.0, 30.0, 32.0, 36.0, 40.0, 48.0, 64.0, 72.0, 80.0)
-)
+COARSE = (1.0, 1.25, 1.5, 1.75, 2.0, 2.25, 2.5, 3.0, 3.5, 4.0, 5.0, 6.0, 7.0, 8.0, 9.0, 10.0, 12.0, 14.0, 16.0, 18.0)
+DIAMETRAL_PITCHES = (*COARSE, 20.0, 22.0, 24.0, 26.0, 28.0, 30.0, 32.0, 36.0, 40.0, 48.0, 64.0, 72.0, 80.0)
 """Usual diametral pitches [1/in]. Common practice (from memory)."""
 PER_INCH = (2, 3, 4, 5, 6, 7, 8, 9, 10, 11, 12, 13, 14, 16, 18, 20, 22, 24, 28, 32)
 """Threads per inch that change gears cut without odd ones. Common practice (from memory)."""

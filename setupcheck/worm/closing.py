@@ -80,7 +80,9 @@ STEPS: Sequence[Step] = (
     Step("lead", ("starts", "axial_pitch"), lambda z, px: z * px, "starts x axial pitch"),
     Step("axial_pitch", ("lead", "starts"), lambda pz, z: pz / z, "lead over starts"),
     Step("starts", ("lead", "axial_pitch"), lambda pz, px: _whole(pz / px), "lead over axial pitch"),
-    Step("quotient", ("reference_diameter", "axial_module"), lambda d, m: d / m, "reference diameter over axial module"),
+    Step(
+        "quotient", ("reference_diameter", "axial_module"), lambda d, m: d / m, "reference diameter over axial module"
+    ),
     Step("reference_diameter", ("quotient", "axial_module"), lambda q, m: q * m, "quotient x axial module"),
     Step("axial_module", ("reference_diameter", "quotient"), lambda d, q: d / q, "reference diameter over quotient"),
     Step("lead_angle", ("starts", "quotient"), lambda z, q: math.atan(z / q), "tan g = starts over quotient"),
@@ -90,8 +92,15 @@ STEPS: Sequence[Step] = (
         lambda pz, d: math.atan(pz / (math.pi * d)),
         "tan g = lead over circumference",
     ),
-    Step("normal_module", ("axial_module", "lead_angle"), lambda m, g: m * math.cos(g), "axial module x cos(lead angle)"),
-    Step("axial_module", ("normal_module", "lead_angle"), lambda n, g: n / math.cos(g), "normal module over cos(lead angle)"),
+    Step(
+        "normal_module", ("axial_module", "lead_angle"), lambda m, g: m * math.cos(g), "axial module x cos(lead angle)"
+    ),
+    Step(
+        "axial_module",
+        ("normal_module", "lead_angle"),
+        lambda n, g: n / math.cos(g),
+        "normal module over cos(lead angle)",
+    ),
     Step(
         "axial_module",
         ("normal_module", "starts", "reference_diameter"),

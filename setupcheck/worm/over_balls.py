@@ -49,7 +49,14 @@ class OverBalls:
 
 
 def over_balls(
-    *, starts: int, axial_module: float, teeth: int, pitch_diameter: float, pressure_angle: float, gap: float, ball: float
+    *,
+    starts: int,
+    axial_module: float,
+    teeth: int,
+    pitch_diameter: float,
+    pressure_angle: float,
+    gap: float,
+    ball: float,
 ) -> OverBalls:
     """Size over two balls in opposite gaps, or as opposite as an odd count allows: M = 2 r_c (cos(90 deg/z) if odd) + D.
 
@@ -64,7 +71,7 @@ def over_balls(
     >>> m = over_balls(starts=1, axial_module=2.5, teeth=40, pitch_diameter=30.0, pressure_angle=math.radians(20.0),
     ...                gap=math.pi * 1.25, ball=4.2)
     >>> round(m.size, 4), round(m.contact_diameter, 2), round(m.off_middle, 2)
-    (105.654, 99.96, 0.17)
+    (105.654, 99.95, 0.17)
     """
     above_zero(starts=starts, axial_module=axial_module, teeth=teeth, pitch_diameter=pitch_diameter, gap=gap, ball=ball)
     steep_enough(pressure_angle=pressure_angle)
