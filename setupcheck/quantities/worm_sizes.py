@@ -107,6 +107,17 @@ def one(name: str) -> object:
     return size
 
 
+def diametral_pitch(floor: Floor, worm: Worm) -> float | Open | None:
+    """Diametral pitch of the axial section [1/in]: 25.4 mm over the axial module; None in a metric job that states none.
+
+    Source: by definition.
+    """
+    if floor.loaded.job.units != "in" and worm.diametral_pitch is None:
+        return None
+    found = settled(floor, "diametral_pitch")
+    return found if isinstance(found, Open) else found[0]
+
+
 def axial_lead_angle(floor: Floor) -> float | Open:
     """Lead angle at the reference diameter [rad]: tan g = z1 m/d1.
 
@@ -296,7 +307,7 @@ def _row(name: str, unit: str, digits: int, of: object, inputs: dict[str, str], 
 
 WORM = (
     _row("axial_module", "mm", 4, one("axial_module"), _FLOOR, "axial module"),
-    _row("diametral_pitch", "1", 3, one("diametral_pitch"), _FLOOR, "diametral pitch of the axial section"),
+    _row("diametral_pitch", "1", 3, diametral_pitch, _WORM, "diametral pitch of the axial section"),
     _row("axial_pitch", "mm", 4, one("axial_pitch"), _FLOOR, "axial pitch, from thread to thread"),
     _row("starts", "1", 0, one("starts"), _FLOOR, "starts"),
     _row("lead", "mm", 4, one("lead"), _FLOOR, "lead, the travel in one turn"),

@@ -39,6 +39,7 @@ SENTENCES: Sequence[tuple[str, str, str]] = (
         "worm",
         "lead angle {worm.lead_angle} at the reference diameter {worm.reference_diameter}, {worm.tip_angle} at the tip",
     ),
+    ("worm", "worm", "diametral pitch {worm.diametral_pitch}"),
     ("worm", "worm", "quotient {worm.quotient}, usual tip {worm.usual_tip} and root {worm.usual_root}"),
     ("worm", "worm", "its flank stands up to {worm.off_straight} off a straight axial line"),
     ("worm", "worm", "{worm.candidates}"),
@@ -60,7 +61,7 @@ SENTENCES: Sequence[tuple[str, str, str]] = (
     (
         "mesh",
         "wheel",
-        "the worm touches it over its whole face on a thread of {mesh.thread_length}; {mesh.older_length} by the older rule",
+        "the worm needs {mesh.thread_length} of thread to touch the whole face; {mesh.older_length} by the older rule",
     ),
     (
         "mesh",

@@ -73,10 +73,10 @@ def _module_of_normal(normal: float, starts: float, diameter: float) -> float:
 
 
 STEPS: Sequence[Step] = (
-    Step("axial_module", ("diametral_pitch",), lambda p: INCH / p, "25.4 mm over the diametral pitch"),
-    Step("axial_module", ("axial_pitch",), lambda px: px / math.pi, "axial pitch over pi"),
     Step("axial_pitch", ("axial_module",), lambda m: math.pi * m, "pi x axial module"),
     Step("diametral_pitch", ("axial_module",), lambda m: INCH / m, "25.4 mm over the axial module"),
+    Step("axial_module", ("diametral_pitch",), lambda p: INCH / p, "25.4 mm over the diametral pitch"),
+    Step("axial_module", ("axial_pitch",), lambda px: px / math.pi, "axial pitch over pi"),
     Step("lead", ("starts", "axial_pitch"), lambda z, px: z * px, "starts x axial pitch"),
     Step("axial_pitch", ("lead", "starts"), lambda pz, z: pz / z, "lead over starts"),
     Step("starts", ("lead", "axial_pitch"), lambda pz, px: _whole(pz / px), "lead over axial pitch"),
