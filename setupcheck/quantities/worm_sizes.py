@@ -245,7 +245,7 @@ def advice(floor: Floor) -> str | None:
     if first is None or found is None or worm is None:
         return None
     if {"lead", "starts"} <= first.about and worm.starts is not None and worm.lead is not None:
-        pitches = worm.lead.value / found.values["lead"] * worm.starts
+        pitches = worm.lead.value / found.values["axial_pitch"]
         said = starts_of(pitches, worm.starts)
         if said:
             return said
