@@ -29,7 +29,9 @@ from setupcheck.jobfile.types import (
 def _ratio(given: object) -> float:
     value = notation.number(scalar(given))
     if not 0.0 < value <= LARGEST_RATIO:
-        raise ValueError(f"{notation.quoted(given)} is not such a number. Write one above zero, as in 12")
+        raise ValueError(
+            f"{notation.quoted(given)} is no quotient and no diametral pitch. Write a number above zero, as in 12"
+        )
     return value
 
 

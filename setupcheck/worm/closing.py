@@ -228,9 +228,9 @@ def _disagreements(
         rests_on = frozenset().union(*(origins[need] for need in step.needs))
         if step.gives in rests_on:
             continue
-        value = _made_exactly(step, values)
-        if value is not None:
-            one = _told(step.gives, stated[step.gives], rests_on, value, step.words)
+        made = _made_exactly(step, values)
+        if made is not None:
+            one = _told(step.gives, stated[step.gives], rests_on, made, step.words)
             told.setdefault(one.about, one)  # the step that stands first is the one to tell
     for one in sorted(told.values(), key=lambda one: len(one.about)):
         size = 1.0 if one.name == "shift" else max(abs(one.stated), abs(one.value))

@@ -104,9 +104,11 @@ def off_straight(
 
         def half(radius: float) -> float:
             return groove / 2.0 + _involute(radius, p=p, base=base) - start
+
+        of: Callable[[float], float] = half
     elif profile == "ZN":
-        half = _straight_in_the_normal_section(p=p, reference_radius=r1, slope=slope, groove=groove)
+        of = _straight_in_the_normal_section(p=p, reference_radius=r1, slope=slope, groove=groove)
     else:
         raise ValueError(f"the flank of a {profile} worm is not computed, only ZA, ZN and ZI")
     radii = [(low + (high - low) * i / POINTS) / 2.0 for i in range(POINTS + 1)]
-    return max(abs(half(r) - (groove / 2.0 + (r - r1) * slope)) for r in radii)
+    return max(abs(of(r) - (groove / 2.0 + (r - r1) * slope)) for r in radii)

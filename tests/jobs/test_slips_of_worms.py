@@ -100,12 +100,11 @@ SLIPS: dict[tuple[str, str], tuple[Slip, Slip]] = {
         ),
         Slip(
             SPINDLE,
-            "  thread_thickness: {measured: 3.080 mm, uncertainty: 4 um}\n",
-            "  thread_thickness: {measured: 3.080 mm, uncertainty: 4 um}\n"
-            "  over_wires: {measured: 40.700, wire: 3.40, uncertainty: 4 um}\n",
-            "thread_thickness gives 3.0800 mm at the reference diameter, over_wires 3.1334 mm, 53 um apart",
+            "  end_float: 8 um\n",
+            "  end_float: 8 um\n  thread_thickness: {measured: 3.133 mm, uncertainty: 4 um}\n",
+            "thread_thickness gives 3.1330 mm at the reference diameter, over_wires 3.0799 mm, 53 um apart",
             "Measure the worm again, or leave away what follows from the rest.",
-            "  over_wires: {measured: 40.5534, wire: 3.40, uncertainty: 4 um}\n",
+            "  end_float: 8 um\n  thread_thickness: {measured: 3.0800 mm, uncertainty: 4 um}\n",
         ),
     ),
     ("MESH-008", "teeth far narrower than such a wheel has"): (
