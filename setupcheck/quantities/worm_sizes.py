@@ -3,9 +3,11 @@
 from __future__ import annotations
 
 import math
-from collections.abc import Iterator, Mapping
+from collections.abc import Callable, Iterator, Mapping
+from functools import lru_cache
 
 from setupcheck.jobfile.models import Dimension, Toothing
+from setupcheck.jobfile.reading import LoadedJob
 from setupcheck.jobfile.worm import Worm
 from setupcheck.notation import show
 from setupcheck.quantities.book import Open, OutOfRange, Quantity
@@ -34,11 +36,15 @@ MOST_STARTS = 12
 
 def toothing(floor: Floor) -> Toothing | None:
     """The teeth of the mesh's wheel; None where there are none."""
-    mesh = floor.loaded.job.mesh
+    return _teeth(floor.loaded)
+
+
+def _teeth(loaded: LoadedJob) -> Toothing | None:
+    mesh = loaded.job.mesh
     if mesh is None:
         return None
-    ref = floor.loaded.ref(mesh.wheel)
-    node = floor.loaded.job.parts[ref.part].surfaces[ref.surface]
+    ref = loaded.ref(mesh.wheel)
+    node = loaded.job.parts[ref.part].surfaces[ref.surface]
     return node if isinstance(node, Toothing) else None
 
 
@@ -48,8 +54,12 @@ def sizes(floor: Floor) -> Closed | None:
     What is drawn of the worm comes first, then the wheel's circle, then a measured pitch or lead, then the centre distance.
     Source: worm.closing.
     """
-    job = floor.loaded.job
-    worm, mesh, wheel = job.worm, job.mesh, toothing(floor)
+    return _closed(floor.loaded)
+
+
+@lru_cache(maxsize=4)  # a job is asked some forty times, and never changes
+def _closed(loaded: LoadedJob) -> Closed | None:
+    worm, mesh, wheel = loaded.job.worm, loaded.job.mesh, _teeth(loaded)
     if worm is None:
         return None
     drawn = {name: float(getattr(worm, name)) for name in STATED if getattr(worm, name) is not None}
@@ -96,14 +106,14 @@ def settled(floor: Floor, *names: str) -> tuple[float, ...] | Open:
     return Open(missing) if missing else tuple(values[name] for name in names)
 
 
-def one(name: str) -> object:
+def one(name: str, formula: str) -> Callable[[Floor], float | Open]:
     """The function of a row that shows one settled size."""
 
     def size(floor: Floor) -> float | Open:
         found = settled(floor, name)
         return found if isinstance(found, Open) else found[0]
 
-    size.__doc__ = f"{name.replace('_', ' ')} as stated, or as the other sizes settle it. Source: worm.closing."
+    size.__doc__ = f"As stated, or as the other sizes settle it: {formula}. Source: worm.closing."
     return size
 
 
@@ -306,14 +316,35 @@ def _row(name: str, unit: str, digits: int, of: object, inputs: dict[str, str], 
 
 
 WORM = (
-    _row("axial_module", "mm", 4, one("axial_module"), _FLOOR, "axial module"),
+    _row(
+        "axial_module",
+        "mm",
+        4,
+        one("axial_module", "m = p_x/pi = 25.4/P = m_n/cos g = d1/q = d2/z2 [mm]"),
+        _FLOOR,
+        "axial module",
+    ),
     _row("diametral_pitch", "1", 3, diametral_pitch, _WORM, "diametral pitch of the axial section"),
-    _row("axial_pitch", "mm", 4, one("axial_pitch"), _FLOOR, "axial pitch, from thread to thread"),
-    _row("starts", "1", 0, one("starts"), _FLOOR, "starts"),
-    _row("lead", "mm", 4, one("lead"), _FLOOR, "lead, the travel in one turn"),
-    _row("normal_module", "mm", 4, one("normal_module"), _FLOOR, "normal module"),
-    _row("quotient", "1", 3, one("quotient"), _FLOOR, "diameter quotient"),
-    _row("reference_diameter", "mm", 3, one("reference_diameter"), _FLOOR, "reference diameter"),
+    _row(
+        "axial_pitch",
+        "mm",
+        4,
+        one("axial_pitch", "p_x = pi m = p_z/z1 [mm]"),
+        _FLOOR,
+        "axial pitch, from thread to thread",
+    ),
+    _row("starts", "1", 0, one("starts", "z1 = p_z/p_x"), _FLOOR, "starts"),
+    _row("lead", "mm", 4, one("lead", "p_z = z1 p_x [mm]"), _FLOOR, "lead, the travel in one turn"),
+    _row("normal_module", "mm", 4, one("normal_module", "m_n = m cos g [mm]"), _FLOOR, "normal module"),
+    _row("quotient", "1", 3, one("quotient", "q = d1/m"), _FLOOR, "diameter quotient"),
+    _row(
+        "reference_diameter",
+        "mm",
+        3,
+        one("reference_diameter", "d1 = q m = 2 (a - x m) - d2 [mm]"),
+        _FLOOR,
+        "reference diameter",
+    ),
     _row("lead_angle", "deg", 4, axial_lead_angle, _FLOOR, "lead angle at the reference diameter"),
     _row("tip_angle", "deg", 4, tip_angle, _WORM, "lead angle at the tip"),
     _row(
