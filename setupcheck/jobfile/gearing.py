@@ -12,9 +12,10 @@ from contextlib import suppress
 from pydantic import ValidationError
 
 from setupcheck.jobfile.drawing import Drawing
-from setupcheck.jobfile.models import Dimension, Surface, Throat, Toothing
+from setupcheck.jobfile.models import Surface, Throat, Toothing
 from setupcheck.jobfile.names import Miss
 from setupcheck.jobfile.nodes import map_of
+from setupcheck.jobfile.worm import Thickness
 
 THINNEST, THICKEST = 0.2, 0.8  # share of the axial pitch that a thread takes, half as drawn; our screening choice
 ROOTS_BELOW = 3.0  # modules below the pitch circle, where no tooth reaches any more (2.2 to 2.5 is usual); our choice
@@ -53,6 +54,7 @@ def _worm(drawing: Drawing, worm: Mapping[str, object]) -> Iterator[Miss]:
     if tip is not None and reference is not None and 0.0 < tip <= reference:
         says = f"tip_diameter {drawing.shown(tip)} is not above reference_diameter {drawing.shown(reference)}"
         yield Miss(("worm", "tip_diameter"), f"{says}. Is it the radius? Write the diameter")
+    yield from _measured(drawing, worm, tip, reference)
     module, thickness = drawing.length(worm.get("axial_module")), _thickness(drawing, worm.get("thread_thickness"))
     if module is None or module <= 0.0 or thickness is None:
         return
@@ -63,10 +65,33 @@ def _worm(drawing: Drawing, worm: Mapping[str, object]) -> Iterator[Miss]:
         yield Miss(("worm", "thread_thickness"), f"{says}. Write its thickness along the axis, near {half}")
 
 
+def _measured(
+    drawing: Drawing, worm: Mapping[str, object], tip: float | None, reference: float | None
+) -> Iterator[Miss]:
+    """A thickness measured off the thread, and a size over wires that do not stand proud of the tip."""
+    at = drawing.length(map_of(worm.get("thread_thickness")).get("at"))
+    if at is not None and tip is not None and reference is not None and not 2.0 * reference - tip <= at <= tip:
+        says = f"a thread between {drawing.shown(2.0 * reference - tip)} and {drawing.shown(tip)} is not measured at"
+        radius = " Is it the radius?" if 2.0 * reference - tip <= 2.0 * at <= tip else ""
+        yield Miss(("worm", "thread_thickness", "at"), f"{says} {drawing.shown(at)}.{radius} Write the diameter")
+    over = map_of(worm.get("over_wires"))
+    for key in ("measured", "nominal"):
+        size, wire = drawing.length(over.get(key)), drawing.length(over.get("wire"))
+        if size is None or tip is None or wire is None:
+            continue
+        if size <= tip:
+            says = f"{drawing.shown(size)} over wires is not above the tip diameter, {drawing.shown(tip)}"
+            yield Miss(("worm", "over_wires", key), f"{says}. Write the size over the wires, or take thicker wires")
+        elif wire > size - wire:
+            says = f"wires of {drawing.shown(wire)} are larger than what they leave of {drawing.shown(size)}"
+            yield Miss(("worm", "over_wires", "wire"), f"{says}. Write the diameter of one wire")
+
+
 def _thickness(drawing: Drawing, node: object) -> float | None:
     """The thread's thickness along the worm's axis [mm]; None where it is missing or wrong, which is told elsewhere."""
     with suppress(ValidationError):
-        return Dimension.model_validate(node, context={"units": drawing.units}).value
+        found = Thickness.model_validate(node, context={"units": drawing.units})
+        return found.value if found.at is None else None  # elsewhere than at the reference diameter it may well differ
     return None
 
 

@@ -1,6 +1,7 @@
-"""The job models: parts, machines, cutters, worm and mesh, place, requirements. Sizes mm, angles rad, degC, N, s.
+"""The job models: parts, machines, cutters, place, requirements. Sizes mm, angles rad, degC, N, s.
 
-Models that describe a setup stand in `setups.py`, the heat of a joint in `heating.py`. All are frozen and refuse unknown keys.
+Models that describe a setup stand in `setups.py`, the heat of a joint in `heating.py`, worm and mesh in `worm.py`. All are
+frozen and refuse unknown keys.
 """
 
 # Annotations are evaluated as they stand (no __future__ import): pydantic would have to compile each of them from its text.
@@ -18,18 +19,15 @@ from setupcheck import notation
 from setupcheck.jobfile.properties import Properties
 from setupcheck.jobfile.types import (
     Angle,
-    AngleBound,
     Bound,
     Division,
     Force,
-    Housing,
     Length,
     Limit,
     Limits,
     Read,
     Reading,
     Roughness,
-    Service,
     Shop,
     Size,
     Speed,
@@ -53,7 +51,6 @@ class Dimension(Shop):
     fit: str | None = None
     measured: Length | None = None
     uncertainty: Bound | None = None
-    at: str | None = None
     at_temperature: Temperature | None = None
 
     @model_validator(mode="before")
@@ -274,33 +271,7 @@ class Part(Shop):
     given: tuple[Relation, ...] = ()
 
 
-# -- worm, mesh, cutters, machines, place ----------------------------------------------------------------------------
-
-
-class Worm(Shop):
-    starts: Whole | None = Field(default=None, ge=1, le=12)
-    hand: Literal["right", "left"] | None = None
-    axial_module: Size | None = None
-    reference_diameter: Size | None = None
-    tip_diameter: Size | None = None
-    pressure_angle: Angle | None = None
-    profile: Literal["ZA", "ZN", "ZI", "ZK", "ZC"] | None = None
-    thread_thickness: Dim | None = None
-    material: str | None = None
-    end_float: Bound | None = None
-    runout: RunOut | None = None
-    speed: Speed | None = None
-
-
-class Mesh(Shop):
-    """Worm and wheel where they work. `shift` is the wheel's profile shift factor, `serves_at` the drive's temperatures."""
-
-    wheel: str
-    centre_distance: Dim | None = None
-    shift: float = Field(default=0.0, ge=-1.0, le=1.0)
-    shaft_angle_error: AngleBound | None = None
-    housing: Housing | None = None
-    serves_at: Service | None = None
+# -- cutters, machines, place ----------------------------------------------------------------------------------------
 
 
 class Cutter(Shop):

@@ -13,13 +13,11 @@ from setupcheck.jobfile.models import (
     Error,
     Facing,
     Machine,
-    Mesh,
     Part,
     Place,
     Require,
     RunOut,
     Waive,
-    Worm,
 )
 from setupcheck.jobfile.service import JointService
 from setupcheck.jobfile.types import (
@@ -39,6 +37,7 @@ from setupcheck.jobfile.types import (
     Whole,
     in_file_units,
 )
+from setupcheck.jobfile.worm import Mesh, Worm
 
 Device = Literal[
     "three-jaw",

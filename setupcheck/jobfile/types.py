@@ -45,7 +45,7 @@ def as_listed(given: object) -> str:
     return notation.quoted(given)
 
 
-def _scalar(given: object) -> Given:
+def scalar(given: object) -> Given:
     """The text or number itself; a list, a map or true/false is refused in words."""
     if isinstance(given, bool) or not isinstance(given, str | int | float):
         kind = {bool: "true or false", list: "a list", dict: "a map", type(None): "empty"}.get(type(given), "no value")
@@ -71,22 +71,22 @@ class Read:
 
 def _plain(read: Callable[[Given], object]) -> Read:
     """Of one value, whatever the units of the file."""
-    return Read(lambda given, info: read(_scalar(given)))
+    return Read(lambda given, info: read(scalar(given)))
 
 
 def _size(given: object, info: ValidationInfo) -> float:
-    return notation.length(_scalar(given), units=units_of(info))
+    return notation.length(scalar(given), units=units_of(info))
 
 
 def _positive_size(given: object, info: ValidationInfo) -> float:
-    value = notation.length(_scalar(given), units=units_of(info))
+    value = notation.length(scalar(given), units=units_of(info))
     if value <= 0.0:
         raise ValueError(f"{as_listed(given)} is not a size. Write a length above zero")
     return value
 
 
 def _bound(given: object, info: ValidationInfo) -> float:
-    return notation.bound(_scalar(given), units=units_of(info), unit_needed=True)
+    return notation.bound(scalar(given), units=units_of(info), unit_needed=True)
 
 
 def _division(given: object, info: ValidationInfo) -> float:
@@ -97,7 +97,7 @@ def _division(given: object, info: ValidationInfo) -> float:
 
 
 def _signed_error(given: object, info: ValidationInfo) -> float:
-    return notation.length(_scalar(given), units=units_of(info), unit_needed=True)
+    return notation.length(scalar(given), units=units_of(info), unit_needed=True)
 
 
 def _range(given: object, info: ValidationInfo) -> tuple[float, float]:
@@ -113,7 +113,7 @@ def _range(given: object, info: ValidationInfo) -> tuple[float, float]:
 
 
 def _amount(given: object, info: ValidationInfo) -> Amount:
-    return notation.amount(_scalar(given), units=units_of(info))
+    return notation.amount(scalar(given), units=units_of(info))
 
 
 def _amounts(given: object, info: ValidationInfo) -> tuple[Amount, Amount]:
@@ -130,7 +130,7 @@ def _amounts(given: object, info: ValidationInfo) -> tuple[Amount, Amount]:
 def _service(given: object, info: ValidationInfo) -> tuple[float, float]:
     if not isinstance(given, list) or len(given) != 2:
         raise ValueError(f"{as_listed(given)} is not a span of temperatures. Write [5 degC, 45 degC]")
-    low, high = (notation.temperature(_scalar(g)) for g in given)
+    low, high = (notation.temperature(scalar(g)) for g in given)
     if low > high:
         raise ValueError(f"{as_listed(given)} runs from warm to cold. Write the colder one first")
     return low, high
@@ -186,7 +186,7 @@ def _carried(given: object) -> object:
 
 
 def _coolant(given: object) -> Amount:
-    told = _scalar(given)
+    told = scalar(given)
     try:
         found = notation.amount(told)
     except NotationError as why:
@@ -212,7 +212,7 @@ def _housing(given: object, info: ValidationInfo) -> object:
     if given is None or _MATERIAL_NUMBER.fullmatch(str(given)):
         return given
     try:
-        notation.length(_scalar(given), units=units_of(info))
+        notation.length(scalar(given), units=units_of(info))
     except NotationError:
         return given
     raise ValueError(f"{notation.quoted(given)} is a length, not a material. {advice}")
@@ -262,7 +262,7 @@ Force = Annotated[float, _plain(notation.force)]
 """A force [N]; the unit must be written."""
 Speed = Annotated[float, _plain(notation.speed)]
 """[rev/min]"""
-Fraction = Annotated[float, BeforeValidator(lambda given: notation.fraction(_scalar(given)))]
+Fraction = Annotated[float, BeforeValidator(lambda given: notation.fraction(scalar(given)))]
 """A share; its fields have bounds of their own, so pydantic looks at the number again."""
 Limit = Annotated[Amount, Read(_amount)]
 Carried = Annotated[dict[Literal["torque", "axial_force"], Limit], BeforeValidator(_carried)]

@@ -5,12 +5,12 @@ from __future__ import annotations
 import math
 
 from setupcheck.division.methods import circles_that_fit
-from setupcheck.jobfile.models import Mesh, Toothing
 from setupcheck.jobfile.setups import Join, Setup
+from setupcheck.jobfile.worm import Mesh
 from setupcheck.notation import show, show_angle
 from setupcheck.physics.heating import planned_heat
 from setupcheck.physics.materials import expansion_for
-from setupcheck.quantities.book import Quantity
+from setupcheck.quantities.book import Open, Quantity
 from setupcheck.quantities.drive import WheelCut, middle
 from setupcheck.quantities.joining import heat_error
 from setupcheck.quantities.joint_heat import carry_loss, unheated
@@ -18,6 +18,7 @@ from setupcheck.quantities.opening import SPARE, hub_expansion
 from setupcheck.quantities.pairing import Pair
 from setupcheck.quantities.shop import Floor
 from setupcheck.quantities.strength import force_held
+from setupcheck.quantities.worm_sizes import settled, toothing
 
 BEST = (1.4, 2.0)
 """Cutter circles that mark best, over the worm's tip radius. Source: own simulation (from memory)."""
@@ -188,14 +189,12 @@ def depth(cut: WheelCut, floor: Floor) -> str | None:
 
 def shift(floor: Floor, mesh: Mesh) -> str | None:
     """The profile shift that closes the centre distance, or that none does. Source: a = (d1 + d2)/2 + x m (from memory)."""
-    worm, ref = floor.loaded.job.worm, floor.loaded.ref(mesh.wheel)
-    node = floor.loaded.job.parts[ref.part].surfaces[ref.surface]
-    if worm is None or worm.axial_module is None or worm.reference_diameter is None or mesh.centre_distance is None:
+    found, node = settled(floor, "axial_module", "reference_diameter"), toothing(floor)
+    if isinstance(found, Open) or node is None or mesh.centre_distance is None:
         return None
-    if not isinstance(node, Toothing):
-        return None
-    plain = (worm.reference_diameter + node.count * worm.axial_module) / 2.0
-    closing = (middle(mesh.centre_distance) - plain) / worm.axial_module
+    module, diameter = found
+    plain = (diameter + node.count * module) / 2.0
+    closing = (middle(mesh.centre_distance) - plain) / module
     unit, digits = ("in", 4) if floor.loaded.job.units == "in" else ("mm", 3)
     if abs(closing) > LARGEST_SHIFT:
         return f"Measure again: (d1 + d2)/2 is {show(plain, unit, digits)}, and no usual shift makes up for the rest."

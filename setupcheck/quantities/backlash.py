@@ -30,6 +30,7 @@ from setupcheck.quantities.relations import Built, pair, second_order
 from setupcheck.quantities.requirements import Stack
 from setupcheck.quantities.shop import Floor
 from setupcheck.quantities.stuff import expansion_of, material_of
+from setupcheck.quantities.thread import Thread, thread
 from setupcheck.record import record
 from setupcheck.worm.geometry import normal_pressure_angle
 
@@ -66,7 +67,7 @@ def backlash(floor: Floor, stack: Stack) -> Built | Open:
     opened = [x for x in (found, both, made) if isinstance(x, Open)]
     if opened or not isinstance(found, Drive) or isinstance(both, Open) or not isinstance(made, WheelCut):
         return _merged(opened)
-    factor = _along(floor, stack, found)
+    factor = along_of(floor, stack, found)
     g, r = both
     served = _served(floor, found)
     gap, depth = _gap(floor, made), _depth(floor, made, g)
@@ -89,7 +90,7 @@ def _merged(opened: list[Open]) -> Open:
     return Open(missing, "; ".join(dict.fromkeys(x.because for x in opened if x.because)))
 
 
-def _along(floor: Floor, stack: Stack, found: Drive) -> float:
+def along_of(floor: Floor, stack: Stack, found: Drive) -> float:
     """From the arc at the reference circle to what the requirement speaks of.
 
     Raises: JobError for a word that is none.  Source: j_n = j_t cos(alpha_n) cos(g), ISO 1122-2 quantities (from memory).
@@ -212,18 +213,19 @@ def _farthest(cut: WheelCut) -> float:
 
 def _mesh(floor: Floor, found: Drive) -> Account | Open:
     """- thread + 2 (a - r1 - r2) tan(alpha), with the errors of thread and centre distance."""
-    mesh, worm = floor.loaded.job.mesh, floor.loaded.job.worm
-    assert mesh is not None and worm is not None
-    assert isinstance(mesh.centre_distance, Dimension) and isinstance(worm.thread_thickness, Dimension)
+    mesh = floor.loaded.job.mesh
+    assert mesh is not None
+    if not isinstance(mesh.centre_distance, Dimension):  # settled by the other sizes, but with what limits?
+        return Open(("mesh.centre_distance",))
+    known = thread(floor)
+    if not isinstance(known, Thread):
+        return known if known is not None else Open(("worm",))
     a, of_distance = size_error(
         mesh.centre_distance, Entry("housing, centre distance", None, "mesh.centre_distance", "")
     )
-    s, of_thread = size_error(
-        worm.thread_thickness, Entry("worm, thickness of its thread", None, "worm.thread_thickness", "")
-    )
     slope = 2.0 * math.tan(found.pressure_angle)
     apart = a - (found.reference_diameter + found.wheel_diameter) / 2.0
-    return (of_distance * slope - of_thread).plus_constant(slope * apart - s)
+    return (of_distance * slope - known.error).plus_constant(slope * apart - known.middle)
 
 
 def _growth(floor: Floor, found: Drive) -> Account | Open:

@@ -12,7 +12,6 @@ from setupcheck.quantities.shop import Floor
 from setupcheck.record import record
 from setupcheck.worm import cutter as fly
 from setupcheck.worm.depth import early_touch as touched_early
-from setupcheck.worm.geometry import fewest_teeth
 from setupcheck.worm.insert import insert_widening, insert_widths
 
 USUAL_FILM = 0.006
@@ -270,21 +269,6 @@ def early_touch(cut: WheelCut, floor: Floor) -> float | Open | None:
         raise OutOfRange(str(why)) from None
 
 
-def fewest(cut: WheelCut) -> float:
-    """Least count of teeth that is not undercut. Raises: OutOfRange for an angle that is none.  Source: worm.geometry."""
-    d = cut.drive
-    shift = (d.pitch_diameter - d.reference_diameter) / (2.0 * d.module)
-    try:
-        return float(math.ceil(fewest_teeth(pressure_angle=d.pressure_angle, shift=shift) - 1e-9))
-    except ValueError as why:
-        raise OutOfRange(str(why)) from None
-
-
-def teeth(cut: WheelCut) -> float:
-    """Teeth of the wheel. Source: the job file."""
-    return float(cut.drive.teeth)
-
-
 def overhang(entry: CutEntry, floor: Floor) -> float | Open | None:
     """Overhang of the cutter's bar over its diameter; a boring head always has a bar, others where either is stated.
 
@@ -349,8 +333,6 @@ SHAPE = (
     _row("width", "mm", 4, width_at_pitch, _CUT, "smallest width of the insert at pitch height"),
     _row("tip_width", "mm", 4, tip_width, _HERE, "insert at its tip for the thread, no backlash"),
     _row("early_touch", "um", 0, early_touch, _HERE, "how early a turning cutter meets the throat's corners"),
-    _row("fewest_teeth", "1", 0, fewest, _CUT, "least count of teeth that is not undercut"),
-    _row("teeth", "1", 0, teeth, _CUT, "teeth of the wheel"),
     _row("overhang", "1", 1, overhang, {"entry": ":", "floor": "route.floor"}, "overhang of the bar over its diameter"),
     _row("tool_change", "", 0, changed_inside, {"entry": ":", "floor": "route.floor"}, "where a tool change falls"),
 )

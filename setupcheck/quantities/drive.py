@@ -2,19 +2,16 @@
 
 from __future__ import annotations
 
-import math
-
-from setupcheck.jobfile.models import Cutter, Dimension, Toothing
+from setupcheck.jobfile.models import Cutter, Dimension
 from setupcheck.jobfile.names import Ref
 from setupcheck.jobfile.setups import Cut
 from setupcheck.quantities.book import Open
 from setupcheck.quantities.joint_shape import cut_of, touched_diameter
 from setupcheck.quantities.shop import Floor
+from setupcheck.quantities.thread import Thread, not_straight, thread
+from setupcheck.quantities.worm_sizes import settled, toothing
 from setupcheck.record import record
 from setupcheck.worm.geometry import lead_angle
-
-NEARLY_ZA = math.radians(5.0)
-"""Lead angle up to which other profiles pass for ZA: they differ by microns. Source: derived for small modules (from memory)."""
 
 
 @record
@@ -46,50 +43,47 @@ class Drive:
 
 
 def drive(floor: Floor) -> Drive | Open | None:
-    """Worm and wheel of the mesh; None where the job has none. Source: the job file; lead angle ISO 1122-2 (from memory)."""
+    """Worm and wheel of the mesh; None where the job has none. Source: the job file; lead angle ISO 1122-2 (from memory).
+
+    Module, worm diameter, starts and centre distance may be stated or follow from the others.
+    """
     mesh, worm = floor.loaded.job.mesh, floor.loaded.job.worm
     if mesh is None or worm is None:
         return None
-    needed = (
-        "starts",
-        "axial_module",
-        "reference_diameter",
-        "tip_diameter",
-        "pressure_angle",
-        "profile",
-        "thread_thickness",
+    wheel, node = floor.loaded.ref(mesh.wheel), toothing(floor)
+    if node is None:
+        return Open(("mesh.wheel",), f"{wheel} has no teeth")
+    found, known = settled(floor, "starts", "axial_module", "reference_diameter", "centre_distance"), thread(floor)
+    missing = tuple(
+        f"worm.{key}" for key in ("tip_diameter", "pressure_angle", "profile") if getattr(worm, key) is None
     )
-    missing = tuple(f"worm.{key}" for key in needed if getattr(worm, key) is None)
-    if mesh.centre_distance is None:
-        missing += ("mesh.centre_distance",)
-    if missing or mesh.centre_distance is None:
-        return Open(missing)
-    assert worm.starts is not None and worm.axial_module is not None and worm.reference_diameter is not None
-    assert worm.tip_diameter is not None
-    assert worm.pressure_angle is not None and worm.thread_thickness is not None
+    opened = [x for x in (found, known) if isinstance(x, Open)]
+    if opened or missing:
+        of_all = (*(m for x in opened for m in x.missing), *missing)
+        return Open(tuple(dict.fromkeys(of_all)), "; ".join(x.because for x in opened if x.because))
+    assert not isinstance(found, Open) and isinstance(known, Thread)
+    assert worm.tip_diameter is not None and worm.pressure_angle is not None
+    starts, module, diameter, distance = found
     try:
-        lead = lead_angle(starts=worm.starts, axial_module=worm.axial_module, diameter=worm.reference_diameter)
+        lead = lead_angle(starts=round(starts), axial_module=module, diameter=diameter)
     except ValueError as why:
         return Open(because=str(why))
-    if worm.profile in ("ZK", "ZC") or (worm.profile != "ZA" and lead > NEARLY_ZA):
-        return Open(because=f"a {worm.profile} worm of this lead angle is not computed, only ZA")
-    wheel = floor.loaded.ref(mesh.wheel)
-    node = floor.loaded.job.parts[wheel.part].surfaces[wheel.surface]
-    if not isinstance(node, Toothing):
-        return Open(("mesh.wheel",), f"{wheel} has no teeth")
+    bent = not_straight(floor, worm)
+    if bent is not None:
+        return bent
     return Drive(
         wheel=wheel,
-        starts=worm.starts,
-        module=worm.axial_module,
-        reference_diameter=worm.reference_diameter,
+        starts=round(starts),
+        module=module,
+        reference_diameter=diameter,
         tip_diameter=worm.tip_diameter,
         pressure_angle=worm.pressure_angle,
         lead_angle=lead,
         teeth=node.count,
-        wheel_diameter=node.count * worm.axial_module,
+        wheel_diameter=node.count * module,
         face_width=node.width,
-        centre_distance=middle(mesh.centre_distance),
-        thread=middle(worm.thread_thickness),
+        centre_distance=distance,
+        thread=known.middle,
     )
 
 

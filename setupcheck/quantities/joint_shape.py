@@ -10,6 +10,7 @@ from setupcheck.jobfile.names import Ref
 from setupcheck.jobfile.setups import Cut, Join
 from setupcheck.quantities.book import Open
 from setupcheck.quantities.shop import Floor
+from setupcheck.quantities.worm_sizes import settled
 from setupcheck.record import record
 
 DEDENDUM = 1.25
@@ -136,10 +137,11 @@ def root_diameter(floor: Floor, part: str, name: str) -> float | Open:
         touched = touched_diameter(floor, part, cut)
         if isinstance(touched, float):
             return touched - 2.0 * cut.depth
-    module, mesh, worm = node.module, floor.loaded.job.mesh, floor.loaded.job.worm
-    if module is None and mesh is not None and worm is not None:
-        wheel = floor.loaded.ref(mesh.wheel)
-        module = worm.axial_module if (wheel.part, wheel.surface) == (part, name) else None
+    module, mesh = node.module, floor.loaded.job.mesh
+    if module is None and mesh is not None and floor.loaded.job.worm is not None:
+        wheel, found = floor.loaded.ref(mesh.wheel), settled(floor, "axial_module")
+        if (wheel.part, wheel.surface) == (part, name) and not isinstance(found, Open):
+            module = found[0]
     if module is None:
         return Open((f"parts.{part}.surfaces.{name}.module",))
     return node.on_circle - 2.0 * DEDENDUM * module

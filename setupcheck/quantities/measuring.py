@@ -84,9 +84,10 @@ def thread(floor: Floor, setup: Setup) -> str | Open | None:
     worm = floor.loaded.job.worm
     if worm is None or not cuts_the_wheel(floor.loaded, setup):
         return None
-    if worm.thread_thickness is None:
+    if worm.thread_thickness is None and worm.over_wires is None:
         return Open(("worm.thread_thickness",))
-    return "measured" if worm.thread_thickness.measured is not None else "nominal"
+    stated = (worm.thread_thickness, worm.over_wires)
+    return "measured" if any(x is not None and x.measured is not None for x in stated) else "nominal"
 
 
 def end_float(floor: Floor, stack: Stack) -> str | None:

@@ -2,27 +2,26 @@
 
 from __future__ import annotations
 
-from setupcheck.jobfile.models import Mesh, Toothing
+from setupcheck.jobfile.worm import Mesh
 from setupcheck.quantities.book import Open, Quantity
 from setupcheck.quantities.drive import middle
 from setupcheck.quantities.judged import Result
 from setupcheck.quantities.shop import Floor
+from setupcheck.quantities.worm_sizes import settled, sizes, toothing
 
 
-def _wheel(floor: Floor, mesh: Mesh) -> Toothing | None:
-    ref = floor.loaded.ref(mesh.wheel)
-    node = floor.loaded.job.parts[ref.part].surfaces[ref.surface]
-    return node if isinstance(node, Toothing) else None
+def circle_miss(floor: Floor) -> float | Open | None:
+    """How far the drawn pitch circle is from count times axial module [mm]; None where the module comes from that circle.
 
-
-def circle_miss(floor: Floor, mesh: Mesh) -> float | Open | None:
-    """How far the drawn pitch circle is from count times axial module [mm]. Source: the wheel rolls on d2 = z2 m, derived."""
-    worm, wheel = floor.loaded.job.worm, _wheel(floor, mesh)
-    if worm is None or wheel is None:
+    Source: the wheel rolls on d2 = z2 m, derived.
+    """
+    found, wheel = sizes(floor), toothing(floor)
+    if found is None or wheel is None:
         return None
-    if worm.axial_module is None:
-        return Open(("worm.axial_module",))
-    return abs(wheel.on_circle - wheel.count * worm.axial_module)
+    if "wheel_diameter" in found.origins.get("axial_module", ()):  # the worm states none: there is nothing to compare
+        return None
+    module = found.values["axial_module"]
+    return abs(wheel.on_circle - wheel.count * module)
 
 
 def distance_miss(floor: Floor, mesh: Mesh) -> float | Open | None:
@@ -30,16 +29,15 @@ def distance_miss(floor: Floor, mesh: Mesh) -> float | Open | None:
 
     Source: ISO 1122-2 quantities (from memory), worm.geometry.
     """
-    worm, wheel = floor.loaded.job.worm, _wheel(floor, mesh)
-    if worm is None or wheel is None:
+    wheel = toothing(floor)
+    if floor.loaded.job.worm is None or wheel is None:
         return None
-    missing = tuple(f"worm.{key}" for key in ("axial_module", "reference_diameter") if getattr(worm, key) is None)
-    if mesh.centre_distance is None:
-        missing += ("mesh.centre_distance",)
-    if worm.axial_module is None or worm.reference_diameter is None or mesh.centre_distance is None:
-        return Open(missing)
-    closed = (worm.reference_diameter + wheel.count * worm.axial_module) / 2.0 + mesh.shift * worm.axial_module
-    return abs(middle(mesh.centre_distance) - closed)
+    found = settled(floor, "axial_module", "reference_diameter")
+    if isinstance(found, Open) or mesh.centre_distance is None:
+        missing = found.missing if isinstance(found, Open) else ()
+        return Open((*missing, *(("mesh.centre_distance",) if mesh.centre_distance is None else ())))
+    module, diameter = found
+    return abs(middle(mesh.centre_distance) - ((diameter + wheel.count * module) / 2.0 + mesh.shift * module))
 
 
 def end_float(floor: Floor) -> float | None:
@@ -71,7 +69,15 @@ def least_backlash(result: Result | None) -> float | None:
 _HERE = {"floor": "route.floor", "mesh": ":"}
 
 MESHING = (
-    Quantity("mesh.circle_miss", "mesh", "um", 1, circle_miss, _HERE, "pitch circle against count x module"),
+    Quantity(
+        "mesh.circle_miss",
+        "mesh",
+        "um",
+        1,
+        circle_miss,
+        {"floor": "route.floor"},
+        "pitch circle against count x module",
+    ),
     Quantity("mesh.distance_miss", "mesh", "um", 1, distance_miss, _HERE, "centre distance against worm and wheel"),
     Quantity("mesh.end_float", "mesh", "um", 1, end_float, {"floor": "route.floor"}, "end float of the worm"),
     Quantity(

@@ -6,8 +6,9 @@ from collections.abc import Iterator, Mapping
 
 from pydantic import BaseModel
 
-from setupcheck.jobfile.models import Deviation, Dimension, Mesh, Worm
+from setupcheck.jobfile.models import Deviation, Dimension
 from setupcheck.jobfile.setups import Job
+from setupcheck.jobfile.worm import Mesh, Worm
 from setupcheck.record import record
 
 _WORDS = {"runout": "run-out", "face_runout": "face run-out", "axis_runout": "axis run-out"}

@@ -43,6 +43,8 @@ def scopes(floor: Floor) -> list[Scope]:
     found = [whole]
     if job.place is not None:
         found.append(Scope("place", "", job.place, "place", line=loaded.line("place"), within=(whole,)))
+    if job.worm is not None:
+        found.append(Scope("worm", "", job.worm, "worm", line=loaded.line("worm"), within=(whole,)))
     if job.mesh is not None:
         found.append(Scope("mesh", "", job.mesh, "mesh", line=loaded.line("mesh"), within=(whole,)))
     for name, part in job.parts.items():

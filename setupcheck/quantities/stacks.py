@@ -16,6 +16,7 @@ from setupcheck.quantities.relations import Built, pair, second_order, state
 from setupcheck.quantities.requirements import Stack
 from setupcheck.quantities.shares import contact, torque
 from setupcheck.quantities.shop import Floor
+from setupcheck.quantities.worm_sizes import settled
 
 
 def build(floor: Floor, stack: Stack) -> Built | Open:
@@ -117,13 +118,12 @@ def _oblique(floor: Floor, g: State, r: State) -> Account | Open:
     wheel = floor.loaded.ref(mesh.wheel)
     if (wheel.part, wheel.surface) != (g.part, g.name):
         return Account()
-    missing = tuple(
-        f"worm.{k}" for k in ("hand", "starts", "axial_module", "reference_diameter") if getattr(worm, k) is None
-    )
-    if missing:
-        return Open(missing)
-    assert worm.starts is not None and worm.axial_module is not None and worm.reference_diameter is not None
-    lead_angle = math.atan(worm.starts * worm.axial_module / worm.reference_diameter)
+    found = settled(floor, "starts", "axial_module", "reference_diameter")
+    if isinstance(found, Open) or worm.hand is None:
+        missing = found.missing if isinstance(found, Open) else ()
+        return Open((*(("worm.hand",) if worm.hand is None else ()), *missing))
+    starts, module, diameter = found
+    lead_angle = math.atan(starts * module / diameter)
     return teeth.oblique(g.lean - r.lean, g.pattern, lead_angle=lead_angle, right_hand=worm.hand != "left")
 
 

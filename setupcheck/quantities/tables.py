@@ -24,8 +24,11 @@ from setupcheck.quantities.placing import PLACE
 from setupcheck.quantities.pressing import PRESSING
 from setupcheck.quantities.stated import STATED
 from setupcheck.quantities.strength import STRENGTH
+from setupcheck.quantities.thread import THREAD
 from setupcheck.quantities.through import THROUGH
 from setupcheck.quantities.tilting import TILT
+from setupcheck.quantities.wheel_sizes import WHEEL
+from setupcheck.quantities.worm_sizes import WORM
 
 ROUTE = (
     Quantity("route.floor", "job", "", 0, judged.floor, {"floor": ":"}, "every surface with what it inherits"),
@@ -272,6 +275,9 @@ TABLES: tuple[Quantity, ...] = (
     *CUTTING,
     *SHAPE,
     *MESHING,
+    *WORM,
+    *THREAD,
+    *WHEEL,
     *PLACE,
     *ADVICE,
     *CLAMP,

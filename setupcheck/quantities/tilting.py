@@ -39,21 +39,11 @@ def needed_angle(floor: Floor, setup: Setup) -> float | Open | None:
 
     Source: ISO 1122-2 quantities (from memory); the pitch point rules the tilt, never the tip.
     """
-    from setupcheck.worm.geometry import lead_angle
+    from setupcheck.quantities.worm_sizes import axial_lead_angle
 
-    worm = floor.loaded.job.worm
-    if worm is None or not cuts_the_wheel(floor.loaded, setup):
+    if floor.loaded.job.worm is None or not cuts_the_wheel(floor.loaded, setup):
         return None
-    missing = tuple(
-        f"worm.{key}" for key in ("starts", "axial_module", "reference_diameter") if getattr(worm, key) is None
-    )
-    if missing:
-        return Open(missing)
-    assert worm.starts is not None and worm.axial_module is not None and worm.reference_diameter is not None
-    try:
-        return lead_angle(starts=worm.starts, axial_module=worm.axial_module, diameter=worm.reference_diameter)
-    except ValueError as why:
-        raise OutOfRange(str(why)) from None
+    return axial_lead_angle(floor)
 
 
 def error(set_angle: float, needed_angle: float) -> float:
@@ -84,21 +74,19 @@ def belongs_to(floor: Floor, set_angle: float, allowed: float) -> str | None:
 
     Source: lead angle at each diameter, ISO 1122-2 (from memory); root = reference - 2.4 m, common practice.
     """
+    from setupcheck.quantities.worm_sizes import settled
     from setupcheck.worm.geometry import whose_lead_angle
 
-    worm = floor.loaded.job.worm
-    if worm is None or set_angle == 0.0:
+    worm, found = floor.loaded.job.worm, settled(floor, "starts", "axial_module", "reference_diameter")
+    if worm is None or set_angle == 0.0 or isinstance(found, Open):
         return None
-    if worm.starts is None or worm.axial_module is None or worm.reference_diameter is None:
-        return None
-    diameters = {"reference": worm.reference_diameter, "root": worm.reference_diameter - 2.4 * worm.axial_module}
+    starts, module, reference = found
+    diameters = {"reference": reference, "root": reference - 2.4 * module}
     if worm.tip_diameter is not None:
         diameters["tip"] = worm.tip_diameter
     try:
         return (
-            whose_lead_angle(
-                set_angle, diameters, starts=worm.starts, axial_module=worm.axial_module, within=max(allowed, 3e-4)
-            )
+            whose_lead_angle(set_angle, diameters, starts=round(starts), axial_module=module, within=max(allowed, 3e-4))
             or "none"
         )
     except ValueError as why:

@@ -29,6 +29,51 @@ SENTENCES: Sequence[tuple[str, str, str]] = (
         "{cutter.width_needed} wide at pitch height and {cutter.tip_width} at its tip fit the thread without backlash",
     ),
     ("place", "place", "{place.shim}"),
+    (
+        "worm",
+        "worm",
+        "axial module {worm.axial_module}, axial pitch {worm.axial_pitch}, lead {worm.lead}, normal module {worm.normal_module}",
+    ),
+    (
+        "worm",
+        "worm",
+        "lead angle {worm.lead_angle} at the reference diameter {worm.reference_diameter}, {worm.tip_angle} at the tip",
+    ),
+    ("worm", "worm", "diametral pitch {worm.diametral_pitch}"),
+    ("worm", "worm", "quotient {worm.quotient}, usual tip {worm.usual_tip} and root {worm.usual_root}"),
+    ("worm", "worm", "its flank stands up to {worm.off_straight} off a straight axial line"),
+    ("worm", "worm", "{worm.candidates}"),
+    (
+        "worm",
+        "thread",
+        "{worm.thickness} thick at the reference diameter; over wires of {worm.wire} it measures {worm.over_wires}",
+    ),
+    ("worm", "thread", "best wire {worm.best_wire}"),
+    ("worm", "thread", "{worm.which_groove}"),
+    (
+        "mesh",
+        "wheel",
+        "reference circle {mesh.reference_circle}, usual throat {mesh.throat}, root {mesh.root}, hollow of {mesh.throat_radius} "
+        "radius, up to {mesh.outside} over the corners",
+    ),
+    ("mesh", "wheel", "usual width {mesh.usual_width}; not undercut from {mesh.fewest_teeth} teeth on"),
+    ("mesh", "wheel", "centre distance {mesh.closing_distance} as drawn"),
+    (
+        "mesh",
+        "wheel",
+        "the worm needs {mesh.thread_length} of thread to touch the whole face; {mesh.older_length} by the older rule",
+    ),
+    (
+        "mesh",
+        "wheel",
+        "over balls {mesh.over_balls} as planned, {mesh.over_balls_tight} without backlash; best ball {mesh.best_ball}",
+    ),
+    (
+        "stack",
+        "backlash",
+        "{mesh.arc_low} to {mesh.arc_high} along the reference circle is {mesh.wheel_low} to {mesh.wheel_high} at the wheel and "
+        "{mesh.worm_low} to {mesh.worm_high} of the worm",
+    ),
 )
 """Kind of thing, what the line is about, and the sentence; it is said where every number in it is known and not zero."""
 
@@ -77,11 +122,11 @@ def filled(found: Review, scope: Scope, sentence: str) -> str:
             value = float(answer.value)  # type: ignore[arg-type]
             unit, digits = found.book.unit(name, scope), found.book.digits(name, scope)
             nothing = nothing and value == 0.0
-            pieces[name] = _angle(value) if unit == "deg" else show(value, unit, digits)
+            pieces[name] = _angle(value) if unit == "deg" and scope.kind == "setup" else show(value, unit, digits)
     return "" if nothing else clean(_PIECE.sub(lambda match: pieces[match[1]], sentence))
 
 
 def _angle(value: float) -> str:
-    """All three spellings, so that nobody converts at the machine."""
+    """An angle that is set at a machine, in all three spellings, so that nobody converts at the machine."""
     shown = (show_angle(value, "dms", 0), show_angle(value, "deg", 4), show_angle(value, "gon", 4))
     return f"{shown[0]} ({shown[1]}, {shown[2]})"

@@ -34,6 +34,9 @@ LAWS = {
 }
 
 COUNTED = {
+    "worm.starts": "starts",
+    "mesh.teeth": "teeth",
+    "mesh.fewest_teeth": "teeth",
     "divide.count": "places",
     "divide.worm_ratio": "crank turns for one of the spindle",
     "divide.circle": "holes",

@@ -38,6 +38,6 @@ def test_a_count_says_no_more_than_its_message() -> None:
     few = (("count: 72, on_circle: 108", "count: 10, on_circle: 15"), ("66.000 ±0.010", "19.500 ±0.010"))
     findings = reviewed(changed(WHEEL, *few)).evaluation.findings
     undercut = next(f for f in findings if f.rule == "MESH-004")
-    assert (undercut.verdict, _margin(undercut)) == ("warn", "")
+    assert (undercut.verdict, _margin(undercut)) == ("fail", "")
     left = next(f for f in findings if f.rule == "CUTTER-008")
     assert _margin(left).startswith(" Margin")

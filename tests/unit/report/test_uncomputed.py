@@ -8,14 +8,14 @@ import json
 import pytest
 from pydantic import BaseModel
 
-from setupcheck.jobfile import heating, models, properties, setups
+from setupcheck.jobfile import heating, models, properties, setups, worm
 from setupcheck.report.json import as_json
 from setupcheck.report.text import as_text
 from setupcheck.report.uncomputed import NOT_LOOKED_AT, in_lines, uncomputed
 from tests.unit.report.sample import GEAR, PLATE, WHEEL, changed, line_of, loaded, reviewed
 
 READ = {
-    "Dimension": "nominal lower upper fit measured uncertainty at at_temperature",
+    "Dimension": "nominal lower upper fit measured uncertainty at_temperature",
     "Deviation": "at_most measured uncertainty standard_uncertainty high_at device mark indicator",
     "Round": "kind diameter low high hole made",
     "Flat": "kind at facing diameter hole made",
@@ -26,8 +26,11 @@ READ = {
     "Part": "material surfaces given",
     "Properties": "modulus poisson expansion yield_strength tensile_strength brittle density specific_heat "
     "conductivity heat_cap last_temper porous",
-    "Worm": "starts hand axial_module reference_diameter tip_diameter pressure_angle end_float",
-    "Mesh": "wheel centre_distance shift",
+    "Worm": "starts hand axial_module normal_module diametral_pitch axial_pitch lead quotient reference_diameter "
+    "tip_diameter pressure_angle over_wires end_float",
+    "Thickness": "nominal lower upper fit measured uncertainty at_temperature at",
+    "OverWires": "nominal lower upper fit measured uncertainty at_temperature wire",
+    "Mesh": "wheel centre_distance shift ball",
     "Cutter": "kind bar_diameter overhang",
     "Machine": "kind worm_ratio axis_runout hole_circles",
     "Distance": "from_ length",
@@ -63,7 +66,7 @@ READ = {
 
 RECORDS = {
     record.__name__: record  # not the name it is found under: some have a second one
-    for module in (models, properties, setups, heating)
+    for module in (models, properties, setups, heating, worm)
     for record in vars(module).values()
     if inspect.isclass(record)
     and issubclass(record, BaseModel)

@@ -1,0 +1,113 @@
+"""The models of a worm and of its mesh with the wheel. Sizes mm, angles rad.
+
+Whatever of the worm's sizes is stated settles the rest; what is stated twice is compared (quantities/worm_sizes.py).
+"""
+
+# Annotations are evaluated as they stand (no __future__ import): pydantic would have to compile each of them from its text.
+from typing import Annotated, Literal
+
+from pydantic import AfterValidator, Field, ValidationInfo, model_validator
+
+from setupcheck import notation
+from setupcheck.jobfile.models import Dim, Dimension, RunOut
+from setupcheck.jobfile.types import (
+    Angle,
+    AngleBound,
+    Bound,
+    Housing,
+    Read,
+    Service,
+    Shop,
+    Size,
+    Speed,
+    Whole,
+    in_file_units,
+    scalar,
+)
+
+
+def _ratio(given: object, info: ValidationInfo) -> float:
+    value = notation.number(scalar(given))
+    if not 0.0 < value <= LARGEST_RATIO:
+        raise ValueError(
+            f"{notation.quoted(given)} is no quotient and no diametral pitch. Write a number above zero, as in 12"
+        )
+    return value
+
+
+LARGEST_RATIO = 1000.0  # quotients lie near 10, diametral pitches below 200; our screening choice
+Ratio = Annotated[float, Read(_ratio)]
+"""A plain number above zero, without a unit."""
+
+
+class Thickness(Dimension):
+    """Thickness of the worm's thread along its axis, at the reference diameter, or at the diameter `at` [mm]."""
+
+    at: Size | None = None
+
+
+class OverWires(Dimension):
+    """Size of the worm over three wires of the diameter `wire`: `{measured: 25.35, wire: 2.50, uncertainty: 3 um}` [mm]."""
+
+    wire: Size
+
+    @model_validator(mode="before")
+    @classmethod
+    def wires_have_a_diameter(cls, given: object) -> object:
+        if not isinstance(given, dict) or "wire" not in given:
+            raise ValueError(
+                "a size over wires needs the wires. Write it as in {measured: 25.35, wire: 2.50, uncertainty: 3 um}"
+            )
+        return given
+
+
+def _above_zero(given: Dimension, info: ValidationInfo) -> Dimension:
+    if given.value <= 0.0:
+        raise ValueError(f"{in_file_units(given.value, info)} is no length of a thread. Write a length above zero")
+    return given
+
+
+Travel = Annotated[Dimension, AfterValidator(_above_zero)]
+"""An axial pitch or a lead [mm], drawn or measured."""
+
+
+class Worm(Shop):
+    """The worm. `pressure_angle` is that of its axial section; `lead` is its travel in one turn.
+
+    diametral_pitch  threads in pi inches along the axis, 25.4 mm over the axial module [1/in]
+    quotient         reference diameter over axial module
+    """
+
+    starts: Whole | None = Field(default=None, ge=1, le=12)
+    hand: Literal["right", "left"] | None = None
+    axial_module: Size | None = None
+    normal_module: Size | None = None
+    diametral_pitch: Ratio | None = None
+    axial_pitch: Travel | None = None
+    lead: Travel | None = None
+    quotient: Ratio | None = None
+    reference_diameter: Size | None = None
+    tip_diameter: Size | None = None
+    pressure_angle: Angle | None = None
+    profile: Literal["ZA", "ZN", "ZI", "ZK", "ZC"] | None = None
+    thread_thickness: Thickness | None = None
+    over_wires: OverWires | None = None
+    material: str | None = None
+    end_float: Bound | None = None
+    runout: RunOut | None = None
+    speed: Speed | None = None
+
+
+class Mesh(Shop):
+    """Worm and wheel where they work. `shift` is the wheel's profile shift factor, `serves_at` the drive's temperatures.
+
+    ball  diameter of the balls that the finished wheel is measured over [mm]
+    """
+
+    wheel: str
+    centre_distance: Dim | None = None
+    shift: float = Field(default=0.0, ge=-1.0, le=1.0)
+    shaft_angle_error: AngleBound | None = None
+    housing: Housing | None = None
+    serves_at: Service | None = None
+    ball: Size | None = None

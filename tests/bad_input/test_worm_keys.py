@@ -1,0 +1,94 @@
+"""Keys of a worm that cannot be read or cannot be meant: each refused at its place, with what to write."""
+
+from __future__ import annotations
+
+import pytest
+
+from setupcheck.jobfile.reading import read_job_text
+from setupcheck.shipped import shipped
+from tests.bad_input.ring import refused, spoilt
+
+WHEEL = shipped("jobs/rotator-worm-wheel.yaml").read_text("utf-8")
+MODULE = "  axial_module: 1.5\n"
+THICKNESS = "  thread_thickness: {measured: 2.310 mm, uncertainty: 4 um}\n"
+
+
+def says(old: str, new: str) -> list[str]:
+    return [f"{p.path} | {p.problem}. {p.hint}" for p in refused(spoilt(old, new, WHEEL)).problems]
+
+
+@pytest.mark.parametrize(
+    ("old", "new", "expected"),
+    [
+        (
+            THICKNESS,
+            "  over_wires: 27.4176\n",
+            "worm.over_wires | a size over wires needs the wires. "
+            "Write it as in {measured: 25.35, wire: 2.50, uncertainty: 3 um}",
+        ),
+        (
+            THICKNESS,
+            "  over_wires: {measured: 27.4176, uncertainty: 3 um}\n",
+            "worm.over_wires | a size over wires needs the wires. "
+            "Write it as in {measured: 25.35, wire: 2.50, uncertainty: 3 um}",
+        ),
+        (
+            THICKNESS,
+            "  over_wires: {measured: 13.7088, wire: 2.55, uncertainty: 3 um}\n",
+            "worm.over_wires.measured | 13.7088 mm over wires is not above the tip diameter, 27 mm. "
+            "Write the size over the wires, or take thicker wires",
+        ),
+        (
+            THICKNESS,
+            "  over_wires: {measured: 27.4176, wire: 25.5, uncertainty: 3 um}\n",
+            "worm.over_wires.wire | wires of 25.5 mm are larger than what they leave of 27.4176 mm. "
+            "Write the diameter of one wire",
+        ),
+        (
+            THICKNESS,
+            "  thread_thickness: {measured: 1.946 mm, at: 12.5, uncertainty: 4 um}\n",
+            "worm.thread_thickness.at | a thread between 21 mm and 27 mm is not measured at 12.5 mm. Is it the radius? "
+            "Write the diameter",
+        ),
+        (
+            MODULE,
+            "  diametral_pitch: 0\n",
+            "worm.diametral_pitch | 0 is no quotient and no diametral pitch. Write a number above zero, as in 12",
+        ),
+        (
+            MODULE,
+            "  quotient: -16\n",
+            "worm.quotient | -16 is no quotient and no diametral pitch. Write a number above zero, as in 12",
+        ),
+        (
+            MODULE,
+            "  axial_pitch: -4.7\n",
+            "worm.axial_pitch | -4.7 mm is no length of a thread. Write a length above zero",
+        ),
+        (
+            MODULE,
+            "  lead: {uncertainty: 10 um}\n",
+            "worm.lead | this size has neither a nominal nor a measured value. Write a size, or measured: 32.04 mm",
+        ),
+        (
+            MODULE,
+            "  axial_modul: 1.5\n",
+            "worm.axial_modul | 'axial_modul' is not a key of this entry. Did you mean axial_module?",
+        ),
+    ],
+)
+def test_a_key_that_cannot_be_meant_is_refused_at_its_place(old: str, new: str, expected: str) -> None:
+    assert [expected] == says(old, new)
+
+
+@pytest.mark.parametrize(
+    ("old", "new"),
+    [
+        (THICKNESS, "  thread_thickness: {measured: 1.946 mm, at: 25, uncertainty: 4 um}\n"),
+        (THICKNESS, "  over_wires: {nominal: 27.42, lower: -0.02 mm, upper: 0 mm, wire: 2.55}\n"),
+        (MODULE, "  axial_pitch: 4.712 ±0.002\n"),
+        (MODULE, "  lead: 3/16 in\n"),
+    ],
+)
+def test_a_key_that_can_be_meant_is_read(old: str, new: str) -> None:
+    assert read_job_text(spoilt(old, new, WHEEL), "job.yaml")
