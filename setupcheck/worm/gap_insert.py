@@ -41,7 +41,8 @@ def envelope_insert(pair: Pair, blank: Blank, cut: Cut, *, columns: int = 97) ->
 
     cut      radius, tilt and clearance it is made for; errors of setting are left out
     columns  planes across the face that are looked at; between them the maximum is that of a parabola
-    Below the start of contact, where nothing touches, it goes on parallel to the mid-plane's tangent.
+    Below the start of contact, where nothing touches, it goes on parallel to the mid-plane's tangent; above the corner of
+    the tooth that stands out farthest along its own tangent.
     Raises: ValueError for a cutter smaller than the worm.
     Source: derived here: the smallest body of revolution that lets the thread pass.
     """
@@ -56,9 +57,13 @@ def envelope_insert(pair: Pair, blank: Blank, cut: Cut, *, columns: int = 97) ->
     touched = np.where(at <= rc[0][:, np.newaxis], widths, NOTHING).max(axis=0)
     middle = _mid_section(pair, made, float(rc.min()))
     start = float(middle.x[-1])  # where contact begins in the mid-plane
-    whole = curve(at[::-1], _peak(widths)[::-1])
+    peak = np.maximum(_peak(widths), _edge(pair, blank, made, at, planes=8 * columns))
+    shrinks = np.flatnonzero(np.diff(peak) < 0.0)  # above the corner that stands out farthest; an insert cannot shrink
+    live = len(peak) if len(shrinks) == 0 else int(shrinks[0]) + 1
+    whole = curve(at[:live][::-1], peak[:live][::-1])
+    peak = np.maximum(whole.at(at)[0], peak)
     below = middle.at(at)[0] + float(whole.at(np.array(start))[0] - middle.y[-1])
-    return _insert(heights, np.where(at <= start, whole.at(at)[0], np.maximum(below, touched)))
+    return _insert(heights, np.where(at <= start, peak, np.maximum(below, touched)))
 
 
 def _mid_section(pair: Pair, cut: Cut, nearest: float) -> Curve:
@@ -93,6 +98,18 @@ def _sections(pair: Pair, blank: Blank, cut: Cut, *, columns: int) -> tuple[Arra
     r = bottom + (top - bottom) * np.linspace(0.0, 1.0, 40)[:, np.newaxis]
     planes = np.broadcast_to(z, r.shape)
     return on_cutter(pair, cut, r, conjugate_gap(pair, r, planes).angle, planes)
+
+
+def _edge(pair: Pair, blank: Blank, cut: Cut, at: Array, *, planes: int) -> Array:
+    """Largest v of the tooth's tip edge at cutter radii `at`, (n,); where the edge does not pass, NOTHING.
+
+    Between planes of the face the edge is taken as straight.
+    """
+    z = np.linspace(-blank.face_width / 2.0, blank.face_width / 2.0, planes)
+    r = blank.top(z)
+    rc, v = on_cutter(pair, cut, r, conjugate_gap(pair, r, z).angle, z)
+    part = (at[:, np.newaxis] - rc[:-1]) / np.where(np.diff(rc) == 0.0, 1.0, np.diff(rc))
+    return np.where((part >= 0.0) & (part <= 1.0), v[:-1] + part * np.diff(v), NOTHING).max(axis=1)
 
 
 def _peak(values: Array) -> Array:

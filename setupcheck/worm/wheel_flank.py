@@ -73,8 +73,8 @@ class Flank:
     angle   TH, conjugate flank from the gap's middle [rad]
     roll    travel of the rack at which each point is touched [mm]
     inside  whether the thread's flank touches the point, and not only its tip edge
-    normal  cosine between the surface's normal and the x axis at the contact: a gap along x times this is square to the flank
-    area    area of the flank that belongs to each point [mm^2]
+    square  cosine between the arc at r and the surface's normal: an arc times this is the distance square to the flank
+    area    area of the flank that belongs to each point [mm^2]; none where only the thread's tip edge passes
     """
 
     pair: Pair
@@ -85,7 +85,7 @@ class Flank:
     angle: Array
     roll: Array
     inside: np.ndarray
-    normal: Array
+    square: Array
     area: Array
 
 
@@ -94,7 +94,7 @@ def wheel_flank(pair: Pair, blank: Blank, *, side: Side = 1, rows: int = ROWS, c
 
     rows, columns  points up the flank and along the face, both at least 8
     Raises: ValueError for a face or throat that the worm does not reach, or a tooth that runs into the worm's axis.
-    Source: `conjugate_gap`; areas from the surface's normal.
+    Source: `conjugate_gap`; its slopes are those of the function under the maximum, with the place of the maximum held.
     """
     if min(rows, columns) < 8:
         raise ValueError("a grid of fewer than 8 rows or columns shows nothing: 30 and more are usual")
@@ -107,11 +107,14 @@ def wheel_flank(pair: Pair, blank: Blank, *, side: Side = 1, rows: int = ROWS, c
     if np.isnan(gap.angle).any():
         raise ValueError("the worm does not reach the whole flank: a narrower face is needed")
     h = pair.centre_distance - r * np.cos(gap.turned)
-    rise = flank_slope(pair.thread, h, planes, side=side)
-    normal = 1.0 / np.sqrt(1.0 + rise**2 + flank_across(pair.thread, h, planes, side=side) ** 2)
+    s, c = np.sin(gap.turned), np.cos(gap.turned)
+    up_profile = r / pair.rolling * (flank_slope(pair.thread, h, planes, side=side) * c - s)  # r dTH/dr
+    along = r / pair.rolling * flank_across(pair.thread, h, planes, side=side)  # r dTH/dz
+    square = 1.0 / np.sqrt(1.0 + up_profile**2 + along**2)
     step = np.full(columns, z[1] - z[0])
     step[[0, -1]] /= 2.0
-    area = (top - bottom) / rows * step * np.ones_like(r)
+    high = (top - bottom) / rows
+    touched = np.clip((r - first_contact(pair, z, side=side)) / high + 0.5, 0.0, 1.0)
     return Flank(
         pair=pair,
         blank=blank,
@@ -121,8 +124,8 @@ def wheel_flank(pair: Pair, blank: Blank, *, side: Side = 1, rows: int = ROWS, c
         angle=gap.angle,
         roll=roll_of(pair, gap, r, planes, side=side),
         inside=gap.inside,
-        normal=normal,
-        area=area,
+        square=square,
+        area=touched * high * step / square,
     )
 
 
