@@ -1,16 +1,18 @@
 """Insert for a plunged cutter made from the exact gap: mid-plane section, or the envelope that nothing of the worm enters.
 
-Lengths mm, angles rad. Both flanks of these inserts are alike, as the gap is when it is turned half round.
+Lengths mm, angles rad. Both flanks of these inserts are alike, as the gap comes back on itself by half a turn about the line
+of centres. The sections of the gap do not depend on the cutter: compute them once where many cutters are compared.
 """
 
 from __future__ import annotations
 
 import numpy as np
 
+from setupcheck.record import record
 from setupcheck.worm.conjugate import Pair, conjugate_gap, first_contact
 from setupcheck.worm.helicoid import Array
 from setupcheck.worm.plunge_gap import Curve, Cut, Insert, check_size, curve, on_cutter
-from setupcheck.worm.wheel_flank import Blank
+from setupcheck.worm.wheel_flank import Blank, ends_of_flank
 
 POINTS = 240
 """Heights at which a profile is tabulated; cubic between them, so that 1e-6 mm are kept. Chosen here."""
@@ -18,11 +20,62 @@ POINTS = 240
 NOTHING = -1e9
 """Width [mm] that stands for no metal at all."""
 
+HIGHER = 0.02
+"""How much higher than the tooth's tip an envelope still holds the flank, in modules: without it the corners of the teeth
+are the first to ride when the tilt is a little wrong. Chosen here."""
+
 MARGIN = 0.1
 """What a profile goes on beyond the highest point of the flank, in modules, for a cutter set a little wrong. Chosen here."""
 
 
-def mid_plane_insert(pair: Pair, blank: Blank, cut: Cut) -> Insert:
+@record(eq=False)
+class Sections:
+    """Right flank of the conjugate gap in planes across the face, from first contact to a little above the tooth's tip.
+
+    r, angle       (40, planes) [mm, rad];  z (planes,) [mm]
+    edge_r, edge_angle, edge_z   the top of it, closer together, (n,)
+    middle_r, middle_angle       mid-plane section, from first contact on beyond the throat, (n,)
+    """
+
+    pair: Pair
+    r: Array
+    angle: Array
+    z: Array
+    edge_r: Array
+    edge_angle: Array
+    edge_z: Array
+    middle_r: Array
+    middle_angle: Array
+
+
+def sections(pair: Pair, blank: Blank, *, planes: int = 97) -> Sections:
+    """Sections of the gap that inserts are made from; planes  across the face, 9 or more.
+
+    Raises: ValueError for a face or throat the worm does not reach.  Source: `conjugate_gap`.
+    """
+    if planes < 9:
+        raise ValueError("fewer than 9 planes miss where the envelope touches: 49 to 97 are usual")
+    higher = HIGHER * pair.thread.axial_module
+    z, edge_z = (np.linspace(-0.5, 0.5, n) * blank.face_width for n in (planes, 8 * planes))
+    ends_of_flank(pair, blank, z)
+    top, edge_r = blank.top(z) + higher, blank.top(edge_z) + higher
+    bottom = np.minimum(first_contact(pair, z), top - 0.05 * pair.thread.axial_module)
+    r = bottom + (top - bottom) * np.linspace(0.0, 1.0, 40)[:, np.newaxis]
+    middle_r = np.linspace(float(first_contact(pair, np.array(0.0))), float(top.max()) + higher, POINTS)
+    return Sections(
+        pair=pair,
+        r=r,
+        angle=conjugate_gap(pair, r, z).angle,
+        z=z,
+        edge_r=edge_r,
+        edge_angle=conjugate_gap(pair, edge_r, edge_z).angle,
+        edge_z=edge_z,
+        middle_r=middle_r,
+        middle_angle=conjugate_gap(pair, middle_r, np.zeros(POINTS)).angle,
+    )
+
+
+def mid_plane_insert(gap: Sections, cut: Cut) -> Insert:
     """Insert copied from the wheel's mid-plane section: W = x cos tau over rc = hypot(ac - y, x sin tau).
 
     cut  radius, tilt and clearance it is made for; errors of setting are left out
@@ -30,48 +83,43 @@ def mid_plane_insert(pair: Pair, blank: Blank, cut: Cut) -> Insert:
     Raises: ValueError for a cutter smaller than the worm.
     Source: derived here; ZA: an exact involute, compared with worm.insert in tests/unit/worm.
     """
-    made = _made_for(pair, cut)
-    rc, _ = _sections(pair, blank, made, columns=41)
-    heights = _heights(pair, made, float(rc.min()))
-    return _insert(heights, _mid_section(pair, made, float(rc.min())).at(made.radius - heights)[0])
+    made = _made_for(gap.pair, cut)
+    heights = _heights(gap, made, on_cutter(gap.pair, made, gap.r, gap.angle, gap.z)[0])
+    return _insert(heights, _middle(gap, made).at(made.radius - heights)[0])
 
 
-def envelope_insert(pair: Pair, blank: Blank, cut: Cut, *, columns: int = 97) -> Insert:
+def envelope_insert(gap: Sections, cut: Cut) -> Insert:
     """Insert whose body holds all that the thread touches: W(rc) = max of v over the conjugate flank at equal rc.
 
     cut      radius, tilt and clearance it is made for; errors of setting are left out
-    columns  planes across the face that are looked at; between them the maximum is that of a parabola
     Below the start of contact, where nothing touches, it goes on parallel to the mid-plane's tangent; above the corner of
-    the tooth that stands out farthest along its own tangent.
+    the tooth that stands out farthest along its own tangent. Between planes the maximum is that of a parabola.
     Raises: ValueError for a cutter smaller than the worm.
     Source: derived here: the smallest body of revolution that lets the thread pass.
     """
-    made = _made_for(pair, cut)
-    rc, v = _sections(pair, blank, made, columns=columns)
-    heights = _heights(pair, made, float(rc.min()))
+    made = _made_for(gap.pair, cut)
+    rc, v = on_cutter(gap.pair, made, gap.r, gap.angle, gap.z)
+    heights = _heights(gap, made, rc)
     at = made.radius - heights
-    widths = np.empty((columns, len(heights)))
-    for i in range(columns):
+    widths = np.empty((len(gap.z), len(heights)))
+    for i in range(len(gap.z)):
         widths[i] = curve(rc[::-1, i], v[::-1, i]).at(at)[0]
         widths[i][at < rc[-1, i]] = NOTHING  # above the tooth's tip
     touched = np.where(at <= rc[0][:, np.newaxis], widths, NOTHING).max(axis=0)
-    middle = _mid_section(pair, made, float(rc.min()))
-    start = float(middle.x[-1])  # where contact begins in the mid-plane
-    peak = np.maximum(_peak(widths), _edge(pair, blank, made, at, planes=8 * columns))
+    peak = np.maximum(_peak(widths), _edge(gap, made, at))
     shrinks = np.flatnonzero(np.diff(peak) < 0.0)  # above the corner that stands out farthest; an insert cannot shrink
     live = len(peak) if len(shrinks) == 0 else int(shrinks[0]) + 1
     whole = curve(at[:live][::-1], peak[:live][::-1])
     peak = np.maximum(whole.at(at)[0], peak)
+    middle = _middle(gap, made)
+    start = float(middle.x[-1])  # where contact begins in the mid-plane
     below = middle.at(at)[0] + float(whole.at(np.array(start))[0] - middle.y[-1])
     return _insert(heights, np.where(at <= start, peak, np.maximum(below, touched)))
 
 
-def _mid_section(pair: Pair, cut: Cut, nearest: float) -> Curve:
-    """Mid-plane section of the right flank on the cutter, v over rc, from first contact to a little beyond `nearest`."""
-    bottom = float(first_contact(pair, np.array(0.0)))
-    top = 1.01 * (cut.axis(pair) - nearest) + MARGIN * pair.thread.axial_module
-    r, z = np.linspace(bottom, top, POINTS), np.zeros(POINTS)
-    rc, v = on_cutter(pair, cut, r, conjugate_gap(pair, r, z).angle, z)
+def _middle(gap: Sections, cut: Cut) -> Curve:
+    """Mid-plane section of the right flank on the cutter, v over rc."""
+    rc, v = on_cutter(gap.pair, cut, gap.middle_r, gap.middle_angle, np.zeros(POINTS))
     return curve(rc[::-1], v[::-1])
 
 
@@ -80,8 +128,8 @@ def _made_for(pair: Pair, cut: Cut) -> Cut:
     return Cut(radius=cut.radius, tilt=cut.tilt, clearance=cut.clearance)
 
 
-def _heights(pair: Pair, cut: Cut, nearest: float) -> Array:
-    return np.linspace(0.0, cut.radius - nearest + MARGIN * pair.thread.axial_module, POINTS)
+def _heights(gap: Sections, cut: Cut, rc: Array) -> Array:
+    return np.linspace(0.0, cut.radius - float(rc.min()) + MARGIN * gap.pair.thread.axial_module, POINTS)
 
 
 def _insert(heights: Array, width: Array) -> Insert:
@@ -90,24 +138,12 @@ def _insert(heights: Array, width: Array) -> Insert:
     return Insert(heights, width, width)
 
 
-def _sections(pair: Pair, blank: Blank, cut: Cut, *, columns: int) -> tuple[Array, Array]:
-    """Cutter radius and axial place on the cutter of the right conjugate flank, from first contact to tip: (40, columns)."""
-    z = np.linspace(-blank.face_width / 2.0, blank.face_width / 2.0, columns)
-    bottom, top = first_contact(pair, z), blank.top(z)
-    bottom = np.minimum(bottom, top - 0.05 * pair.thread.axial_module)
-    r = bottom + (top - bottom) * np.linspace(0.0, 1.0, 40)[:, np.newaxis]
-    planes = np.broadcast_to(z, r.shape)
-    return on_cutter(pair, cut, r, conjugate_gap(pair, r, planes).angle, planes)
-
-
-def _edge(pair: Pair, blank: Blank, cut: Cut, at: Array, *, planes: int) -> Array:
+def _edge(gap: Sections, cut: Cut, at: Array) -> Array:
     """Largest v of the tooth's tip edge at cutter radii `at`, (n,); where the edge does not pass, NOTHING.
 
-    Between planes of the face the edge is taken as straight.
+    Between its points the edge is taken as straight.
     """
-    z = np.linspace(-blank.face_width / 2.0, blank.face_width / 2.0, planes)
-    r = blank.top(z)
-    rc, v = on_cutter(pair, cut, r, conjugate_gap(pair, r, z).angle, z)
+    rc, v = on_cutter(gap.pair, cut, gap.edge_r, gap.edge_angle, gap.edge_z)
     part = (at[:, np.newaxis] - rc[:-1]) / np.where(np.diff(rc) == 0.0, 1.0, np.diff(rc))
     return np.where((part >= 0.0) & (part <= 1.0), v[:-1] + part * np.diff(v), NOTHING).max(axis=1)
 

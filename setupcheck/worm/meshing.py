@@ -19,8 +19,9 @@ from setupcheck.worm.wheel_flank import Flank
 PHASES = 24
 """Positions of the mesh in one pitch. Twice as many move a contact share by less than 1 % (tests/unit/worm)."""
 
-BEYOND = 0.25
-"""How far beyond the path of contact a tooth is still looked at, in pitches: contact on its edges. Chosen here."""
+BEYOND = 0.6
+"""How far beyond the path of contact a tooth is still looked at, in pitches: contact on its edges. From 0.6 on nothing
+changes, down to cutters no larger than the worm (own simulation)."""
 
 FAR = 1e9
 """Gap [mm] of a point that no thread passes."""

@@ -30,8 +30,7 @@ class Cut:
     clearance   the tip's circle below the worm's tip, at the pair's centre distance
     offset      plane of the cutter from the wheel's mid-plane, along +z
     off_centre  insert's face from the axis of the bar
-    turned      insert turned in its own face about the middle of its tip, tip end towards +v, its wide end towards -v: so
-                the right flank becomes steeper (towards the tooth) the more it is turned
+    turned      insert turned in its own face about the middle of its tip, its wide end towards +v
     raked       face turned about the line across its tip (rake), so that heights shorten
     swung       face turned about the radial line, so that widths shorten
     Raises: ValueError for a radius not above zero, no clearance, or angles beyond 45 deg.

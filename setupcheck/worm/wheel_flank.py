@@ -99,7 +99,7 @@ def wheel_flank(pair: Pair, blank: Blank, *, side: Side = 1, rows: int = ROWS, c
     if min(rows, columns) < 8:
         raise ValueError("a grid of fewer than 8 rows or columns shows nothing: 30 and more are usual")
     z = np.linspace(-blank.face_width / 2.0, blank.face_width / 2.0, columns)
-    bottom, top = _ends(pair, blank, z)
+    bottom, top = ends_of_flank(pair, blank, z)
     up = (np.arange(rows) + 0.5) / rows
     r = bottom + (top - bottom) * up[:, np.newaxis]
     planes = np.broadcast_to(z, r.shape)
@@ -129,8 +129,11 @@ def wheel_flank(pair: Pair, blank: Blank, *, side: Side = 1, rows: int = ROWS, c
     )
 
 
-def _ends(pair: Pair, blank: Blank, z: Array) -> tuple[Array, Array]:
-    """Lowest and highest radius of the flank in the planes z [mm]."""
+def ends_of_flank(pair: Pair, blank: Blank, z: Array) -> tuple[Array, Array]:
+    """Lowest and highest radius of the flank in the planes z [mm]: where the worm's tip comes to, and the tooth's tip.
+
+    Raises: ValueError for a face or throat that the worm does not reach, or teeth that run into the worm's core.
+    """
     half = blank.face_width / 2.0
     if not half < pair.thread.tip:
         raise ValueError(
