@@ -154,6 +154,6 @@ def _peak(values: Array) -> Array:
     i = np.clip(np.argmax(values, axis=0), 1, len(values) - 2)
     before, at, after = values[i - 1, n], values[i, n], values[i + 1, n]
     bend = before - 2.0 * at + after
-    peak = at - np.where(bend < 0.0, (after - before) ** 2 / (8.0 * np.where(bend < 0.0, bend, -1.0)), 0.0)
-    real = np.minimum(before, after) > NOTHING / 2.0
-    return np.maximum(np.maximum(before, after), np.where(real & (peak > at), peak, at))
+    inside = (np.minimum(before, after) > NOTHING / 2.0) & (at >= np.maximum(before, after)) & (bend < 0.0)
+    more = np.where(inside, (after - before) ** 2 / (-8.0 * np.where(bend < 0.0, bend, -1.0)), 0.0)
+    return np.maximum(np.maximum(before, after), at + more)
