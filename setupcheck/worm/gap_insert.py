@@ -61,7 +61,8 @@ def sections(pair: Pair, blank: Blank, *, planes: int = 97) -> Sections:
     top, edge_r = blank.top(z) + higher, blank.top(edge_z) + higher
     bottom = np.minimum(first_contact(pair, z), top - 0.05 * pair.thread.axial_module)
     r = bottom + (top - bottom) * np.linspace(0.0, 1.0, 40)[:, np.newaxis]
-    middle_r = np.linspace(float(first_contact(pair, np.array(0.0))), float(top.max()) + higher, POINTS)
+    deepest = pair.centre_distance - 1.02 * pair.thread.innermost
+    middle_r = np.linspace(float(first_contact(pair, np.array(0.0))), min(float(top.max()) + higher, deepest), POINTS)
     return Sections(
         pair=pair,
         r=r,
@@ -96,6 +97,15 @@ def envelope_insert(gap: Sections, cut: Cut) -> Insert:
     the tooth that stands out farthest along its own tangent. Between planes the maximum is that of a parabola.
     Raises: ValueError for a cutter smaller than the worm.
     Source: derived here: the smallest body of revolution that lets the thread pass.
+
+    >>> from setupcheck.worm.helicoid import Thread
+    >>> worm = Thread(profile="ZA", starts=1, axial_module=2.5, reference_diameter=30.0, tip_diameter=35.0,
+    ...               pressure_angle=np.radians(20.0), thickness=np.pi * 1.25)
+    >>> blank = Blank(face_width=16.0, throat_diameter=105.0, throat_radius=12.5, outside_diameter=107.5)
+    >>> gap = sections(Pair(thread=worm, teeth=40, centre_distance=65.0), blank, planes=33)
+    >>> cut = Cut(radius=29.75, tilt=np.arctan(1.0 / 12.0), clearance=0.5)
+    >>> [[round(insert(gap, cut).width(h), 2) for h in (0.0, 3.0, 5.5)] for insert in (mid_plane_insert, envelope_insert)]
+    [[2.15, 3.94, 6.43], [2.17, 3.95, 6.59]]
     """
     made = _made_for(gap.pair, cut)
     rc, v = on_cutter(gap.pair, made, gap.r, gap.angle, gap.z)
@@ -145,7 +155,8 @@ def _edge(gap: Sections, cut: Cut, at: Array) -> Array:
     """
     rc, v = on_cutter(gap.pair, cut, gap.edge_r, gap.edge_angle, gap.edge_z)
     part = (at[:, np.newaxis] - rc[:-1]) / np.where(np.diff(rc) == 0.0, 1.0, np.diff(rc))
-    return np.where((part >= 0.0) & (part <= 1.0), v[:-1] + part * np.diff(v), NOTHING).max(axis=1)
+    passing = np.where((part >= 0.0) & (part <= 1.0), v[:-1] + part * np.diff(v), NOTHING)
+    return np.asarray(passing.max(axis=1), dtype=float)
 
 
 def _peak(values: Array) -> Array:
@@ -156,4 +167,4 @@ def _peak(values: Array) -> Array:
     bend = before - 2.0 * at + after
     inside = (np.minimum(before, after) > NOTHING / 2.0) & (at >= np.maximum(before, after)) & (bend < 0.0)
     more = np.where(inside, (after - before) ** 2 / (-8.0 * np.where(bend < 0.0, bend, -1.0)), 0.0)
-    return np.maximum(np.maximum(before, after), at + more)
+    return np.asarray(np.maximum(np.maximum(before, after), at + more), dtype=float)

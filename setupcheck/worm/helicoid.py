@@ -102,6 +102,11 @@ class Thread:
         return self.tip_diameter / 2.0
 
     @property
+    def innermost(self) -> float:
+        """Radius inside which there is no flank [mm]: the base cylinder of ZI, else 0."""
+        return self.lead / _base_rise(self) if self.profile == "ZI" else 0.0
+
+    @property
     def sense(self) -> float:
         """hs: -1 right-hand, +1 left-hand."""
         return -1.0 if self.hand == "right" else 1.0
@@ -130,7 +135,7 @@ def half_thickness(thread: Thread, rho: Array) -> Array:
     >>> worm = Thread(profile="ZI", starts=2, axial_module=3.0, reference_diameter=36.0, tip_diameter=42.0,
     ...               pressure_angle=math.radians(20.0), thickness=4.7)
     >>> [round(float(s), 4) for s in half_thickness(worm, np.array([15.0, 18.0, 21.0]))]
-    [3.3909, 2.35, 1.2229]
+    [3.4187, 2.35, 1.2419]
     """
     return _shape(thread, rho, reference_half(thread))
 
@@ -158,7 +163,7 @@ def slope(thread: Thread, rho: Array) -> Array:
     >>> worm = Thread(profile="ZN", starts=2, axial_module=3.0, reference_diameter=36.0, tip_diameter=42.0,
     ...               pressure_angle=math.radians(20.0), thickness=4.7)
     >>> [round(math.degrees(math.atan(float(t))), 3) for t in slope(worm, np.array([15.0, 18.0, 21.0]))]
-    [20.137, 20.0, 19.913]
+    [20.148, 20.0, 19.911]
     """
     if thread.profile == "ZA":
         return np.full_like(rho, math.tan(thread.pressure_angle))
@@ -185,7 +190,9 @@ def _shape(thread: Thread, rho: Array, half: float) -> Array:
     if thread.profile == "ZI":
         base = p / _base_rise(thread)
         if np.any(rho < base):
-            raise ValueError(f"an involute thread has no flank inside its base cylinder of {2.0 * base:.4g} mm diameter")
+            raise ValueError(
+                f"an involute thread has no flank inside its base cylinder of {2.0 * base:.4g} mm diameter"
+            )
 
         def f(radius: Array) -> Array:
             return np.sqrt((radius / base) ** 2 - 1.0) - np.arccos(base / radius)
@@ -220,9 +227,7 @@ def generator(thread: Thread, half_thickness: float) -> Generator:
         if abs(step) < 1e-15 * r1:
             break
     u = math.sqrt(r1 * r1 - (v * sine) ** 2)
-    k = (tan_alpha * u / r1 + p * sine * v / r1**2) / (
-        cosine + p * sine * u / r1**2 - tan_alpha * v * sine**2 / r1
-    )
+    k = (tan_alpha * u / r1 + p * sine * v / r1**2) / (cosine + p * sine * u / r1**2 - tan_alpha * v * sine**2 / r1)
     return Generator(u, v, k, sine, cosine)
 
 
@@ -242,7 +247,7 @@ def flank(thread: Thread, h: Array, z: Array, *, side: int) -> Array:
     >>> worm = Thread(profile="ZA", starts=1, axial_module=2.0, reference_diameter=28.0, tip_diameter=32.0,
     ...               pressure_angle=math.radians(20.0), thickness=3.1)
     >>> [round(float(x), 4) for x in flank(worm, np.array(14.0), np.array([0.0, 3.0]), side=1)]
-    [1.55, 1.2231]
+    [1.55, 1.2232]
     """
     rho = np.sqrt(h * h + z * z)
     return side * half_thickness(thread, rho) + (thread.sense * thread.lead) * np.arctan(z / h)

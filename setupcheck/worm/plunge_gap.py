@@ -14,7 +14,7 @@ import numpy as np
 
 from setupcheck.record import record
 from setupcheck.worm.conjugate import Pair, Side
-from setupcheck.worm.geometry import above_zero, not_below_zero
+from setupcheck.worm.geometry import above_zero
 from setupcheck.worm.helicoid import Array
 
 STEPS = 8
@@ -120,6 +120,10 @@ def measured_insert(heights: Array, right: Array, left: Array | None = None) -> 
     left  None: symmetric. Between points the profile is taken as smooth, so a corner wants points close together.
     Raises: ValueError for fewer than five points, heights that do not rise from 0, steps so large that the profile
     between is a guess, widths that do not grow.
+
+    >>> h = np.linspace(0.0, 6.0, 13)
+    >>> round(measured_insert(h, 1.1 + 0.35 * h).width(2.2), 3)
+    3.74
     """
     sides = [np.asarray(v, dtype=float) for v in (heights, right, right if left is None else left)]
     h = sides[0]
@@ -136,7 +140,9 @@ def measured_insert(heights: Array, right: Array, left: Array | None = None) -> 
         )
     for name, v in zip(("right", "left"), sides[1:], strict=True):
         if not np.all(np.diff(v) > 0.0):
-            raise ValueError(f"the insert's {name} flank must grow wider from tip to throat: a loop or a slip of the pen")
+            raise ValueError(
+                f"the insert's {name} flank must grow wider from tip to throat: a loop or a slip of the pen"
+            )
     if not sides[1][0] + sides[2][0] > 0.0:
         raise ValueError("the insert has no width at its tip")
     return Insert(*sides)
@@ -177,6 +183,15 @@ def cut_gap(pair: Pair, cut: Cut, insert: Insert, r: Array, z: Array, *, side: S
     Solves side v = W(rc) along the arc at r by Newton.
     Raises: ValueError for a cutter smaller than the worm, or an insert too short for the flank.
     Source: the frame above; derived here.
+
+    >>> from setupcheck.worm.helicoid import Thread
+    >>> worm = Thread(profile="ZA", starts=1, axial_module=2.0, reference_diameter=28.0, tip_diameter=32.0,
+    ...               pressure_angle=math.radians(20.0), thickness=3.1)
+    >>> pair, h = Pair(thread=worm, teeth=50, centre_distance=64.0), np.linspace(0.0, 6.0, 13)
+    >>> cut, insert = Cut(radius=25.0, tilt=math.atan(1.0 / 14.0), clearance=0.4), measured_insert(h, 0.7 + 0.36 * h)
+    >>> r, z, start = np.array([49.0, 50.0, 51.0]), np.zeros(3), np.full(3, 0.03)
+    >>> [round(50.0 * float(th), 3) for th in cut_gap(pair, cut, insert, r, z, side=1, start=start)]
+    [1.226, 1.559, 1.879]
     """
     check_size(pair, cut)
     body = revolved(insert, cut, side=side)
@@ -199,7 +214,9 @@ def cut_gap(pair: Pair, cut: Cut, insert: Insert, r: Array, z: Array, *, side: S
         raise ValueError("the cut does not close on the flank: radius, tilt or depth are far from what the worm needs")
     short = float(body.x[0] - rc.min())
     if short > 0.1 * pair.thread.axial_module:
-        raise ValueError(f"the insert is {short:.2g} mm too short: its profile must go on above the throat of the wheel")
+        raise ValueError(
+            f"the insert is {short:.2g} mm too short: its profile must go on above the throat of the wheel"
+        )
     return th
 
 

@@ -21,6 +21,9 @@ class RingError:
     run_out       axial run-out of the ring over a turn at the rolling circle (highest less lowest), and the angle on the
                   wheel at which it stands farthest towards +z, `run_out_at`
     Raises: ValueError for an eccentricity or run-out below zero.
+
+    >>> RingError(eccentricity=0.02).mounting(math.pi, 50.0, Mounting()).distance
+    0.02
     """
 
     eccentricity: float = 0.0
@@ -84,14 +87,12 @@ def round_the_wheel(
     """
     if angles < 3:
         raise ValueError("a turn wants at least 3 places, 8 are usual")
-    at = np.arange(angles) * (2.0 * math.pi / angles)
+    at = np.linspace(0.0, 2.0 * math.pi, angles, endpoint=False, dtype=np.float64)
     rolling, base = flank.pair.rolling, housing or Mounting()
     return Wander(
         at,
         tuple(
-            contact(
-                flank, cut_angle, film=film, mounting=errors.mounting(float(a), rolling, base), phases=phases
-            )
+            contact(flank, cut_angle, film=film, mounting=errors.mounting(float(a), rolling, base), phases=phases)
             for a in at
         ),
     )
