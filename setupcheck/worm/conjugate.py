@@ -124,7 +124,7 @@ def conjugate_gap(pair: Pair, r: Array, z: Array, *, side: Side = 1) -> Gap:
     >>> [round(100.0 * float(th), 4) for th in gap.angle]  # on the rolling circle X(r2, z)/r2
     [3.2908, 3.1, 2.4465]
     """
-    r, z = (np.ascontiguousarray(v, dtype=float) for v in np.broadcast_arrays(r, z))
+    r, z = (np.array(v, dtype=float) for v in np.broadcast_arrays(r, z))
     lowest = lowest_reach(pair, z)
     reached = r > lowest
     ratio = np.where(reached, lowest / np.where(reached, r, 1.0), 1.0)
