@@ -158,6 +158,7 @@ def _contact(flank: Flank, lag: Array, nearest: Array, film: float) -> Contact:
     marked = coverage(nearest, film)
     weight = marked * flank.area
     total = float(weight.sum())
+    ends = np.minimum(nearest[:, [0, -1]], 50.0 * film)
     longest = np.where(flank.area > 0.0, marked, 0.0).max(axis=0)
     step = np.gradient(flank.z)
     step[[0, -1]] /= 2.0
@@ -169,7 +170,7 @@ def _contact(flank: Flank, lag: Array, nearest: Array, film: float) -> Contact:
         marked=marked,
         share=total / float(flank.area.sum()),
         along_face=float(longest @ step) / flank.blank.face_width,
-        ends=float(marked[:, [0, -1]].mean()),
+        ends=float(_flat(film - ends, np.abs(np.gradient(ends, axis=0))).mean()),
         centre=float((weight * flank.z).sum()) / total if total else math.nan,
         height=float((weight * height).sum()) / total if total else math.nan,
     )
@@ -185,5 +186,9 @@ def coverage(distance: Array, film: float) -> Array:
     """
     d = np.minimum(distance, 50.0 * film)
     up, along = np.gradient(d)
-    share: Array = np.clip(0.5 + (film - d) / np.maximum(np.abs(up) + np.abs(along), 1e-12), 0.0, 1.0)
+    return _flat(film - d, np.abs(up) + np.abs(along))
+
+
+def _flat(above: Array, change: Array) -> Array:
+    share: Array = np.clip(0.5 + above / np.maximum(change, 1e-12), 0.0, 1.0)
     return share

@@ -160,8 +160,8 @@ def revolved(insert: Insert, cut: Cut, *, side: Side) -> Curve:
     height, across = insert.heights * c - w * s, w * c + insert.heights * s
     aside = cut.off_centre + height * math.sin(cut.raked) + across * math.sin(cut.swung)
     rc = np.hypot(cut.radius - height * math.cos(cut.raked), aside)
-    if not np.all(np.diff(rc) < 0.0):
-        raise ValueError("turned like that the insert's profile runs back on itself: the angles are too large")
+    if not (np.all(np.diff(rc) < 0.0) and np.all(side * np.diff(across) > 0.0)):
+        raise ValueError("turned like that the insert no longer grows wider towards the throat: smaller angles, please")
     return curve(rc[::-1], side * across[::-1] * math.cos(cut.swung))
 
 

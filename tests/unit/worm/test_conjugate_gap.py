@@ -33,7 +33,9 @@ def grid(pair: Pair, rows: int = 40, columns: int = 41) -> tuple[np.ndarray, np.
     m, half = pair.thread.axial_module, 0.5 * pair.thread.radius
     z = np.linspace(-half, half, columns)
     bottom = pair.centre_distance - np.sqrt(pair.thread.tip**2 - z**2) + 0.02 * m
-    return bottom + (pair.rolling + m - bottom) * np.linspace(0.0, 1.0, rows)[:, np.newaxis], np.broadcast_to(z, (rows, columns))
+    return bottom + (pair.rolling + m - bottom) * np.linspace(0.0, 1.0, rows)[:, np.newaxis], np.broadcast_to(
+        z, (rows, columns)
+    )
 
 
 def test_angles_of_the_gap_computed_earlier_for_this_project_by_an_independent_prototype() -> None:
@@ -133,7 +135,7 @@ def test_it_is_the_gap_of_the_point_by_point_solve(p: exact_gap.Pair) -> None:
 
 def test_an_undercut_wheel_is_refused() -> None:
     few = pair_of(alpha=15.0)
-    with pytest.raises(ValueError, match="undercut.*more teeth, a larger pressure angle or a positive shift"):
+    with pytest.raises(ValueError, match=r"undercut.*more teeth, a larger pressure angle or a positive shift"):
         replace(few, teeth=28, centre_distance=15.0 + 35.0)
 
 

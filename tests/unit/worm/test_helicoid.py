@@ -49,7 +49,8 @@ def test_the_slopes_are_those_of_the_surface(thread: Thread, side: int) -> None:
 def test_a_turn_of_the_worm_is_a_shift_along_it(thread: Thread) -> None:
     rho, phi, turn = 19.0, 0.2, 0.3
     here, there = (
-        float(flank(thread, np.array(rho * math.cos(v)), np.array(rho * math.sin(v)), side=1)) for v in (phi, phi + turn)
+        float(flank(thread, np.array(rho * math.cos(v)), np.array(rho * math.sin(v)), side=1))
+        for v in (phi, phi + turn)
     )
     assert there - here == pytest.approx(thread.sense * thread.lead * turn, abs=1e-12)
 

@@ -8,10 +8,10 @@ from typing import Literal
 import numpy as np
 
 from setupcheck.worm.conjugate import Pair
+from setupcheck.worm.ease_off import EaseOff, ease_off
 from setupcheck.worm.gap_insert import envelope_insert, mid_plane_insert, sections
 from setupcheck.worm.helicoid import Thread
 from setupcheck.worm.meshing import AS_CUT, Contact, Mounting, contact
-from setupcheck.worm.ease_off import EaseOff, ease_off
 from setupcheck.worm.plunge_gap import Cut, Insert
 from setupcheck.worm.wheel_flank import Blank, Flank, wheel_flank
 
@@ -63,7 +63,9 @@ def cut_of(case: int = 1, radius: float = 29.75, **errors: float) -> Cut:
 class Wheel:
     """A pair with its grid and sections, run with one cutter after another."""
 
-    def __init__(self, pair: Pair, blank: Blank, *, side: Literal[1, -1] = 1, rows: int = 48, columns: int = 97) -> None:
+    def __init__(
+        self, pair: Pair, blank: Blank, *, side: Literal[1, -1] = 1, rows: int = 48, columns: int = 97
+    ) -> None:
         self.pair, self.blank = pair, blank
         self.flank: Flank = wheel_flank(pair, blank, side=side, rows=rows, columns=columns)
         self.gap = sections(pair, blank)
