@@ -23,6 +23,9 @@ from setupcheck.worm.wheel_flank import Blank, Flank, wheel_flank
 ROWS, COLUMNS, PLANES = 32, 65, 49
 """Grid of the scan: shares within 1 % of one twice as fine (tests/unit/worm). Chosen here."""
 
+CLEAR = 0.005
+"""Marked share of the end columns below which the ends count as clear. Our screening choice: what the grid of the scan shows."""
+
 LARGEST = 3.0
 """Largest radius looked at, in worm tip radii: beyond it contact only shrinks, by a few per cent. Chosen here."""
 
@@ -178,7 +181,7 @@ def _floor(pair: Pair, clearance: float) -> float:
 
 def _smallest_clear(bench: Workbench, curve: tuple[Candidate, ...], step: float) -> float | None:
     """Smallest multiple of the step at which the ends of the face stay clear, by halving between two of the curve."""
-    clear = next((i for i, c in enumerate(curve) if c.ends == 0.0), None)
+    clear = next((i for i, c in enumerate(curve) if c.ends < CLEAR), None)
     if clear is None:
         return None
     high = math.ceil(curve[clear].radius / step - 1e-9)
@@ -190,7 +193,7 @@ def _smallest_clear(bench: Workbench, curve: tuple[Candidate, ...], step: float)
 
     while low < high:
         middle = (low + high) // 2
-        if ends(middle) == 0.0:
+        if ends(middle) < CLEAR:
             high = middle
         else:
             low = middle + 1

@@ -60,13 +60,13 @@ def second_order(map_: EaseOff) -> tuple[float, float, float]:
     """Crowning A [1/mm], twist B [1/mm] and C0 of e = A z^2 - B z eta - C0 z about the pitch point, from the map.
 
     eta = r2 - r. For the right flank of a right-hand pair; the signs of B and C0 turn for the other flank or hand.
-    Least squares over a quarter of the face and half a module up and down, with terms up to the fourth order so that those
-    do not leak into the second.
+    Least squares over a quarter of the face and 0.3 modules up and down, with terms up to the fourth order so that those do
+    not leak into the second.
     Source: the second-order form of worm.cutter; derived here.
     """
     f = map_.flank
     z, eta = np.broadcast_to(f.z, f.r.shape), f.pair.rolling - f.r
-    half, high = f.blank.face_width / 4.0, 0.5 * f.pair.thread.axial_module
+    half, high = f.blank.face_width / 8.0, 0.3 * f.pair.thread.axial_module
     near = (np.abs(z) <= half) & (np.abs(eta) <= high) & f.inside
     u, w = z[near] / half, eta[near] / high
     powers = [(i, j) for i in range(5) for j in range(5 - i)]

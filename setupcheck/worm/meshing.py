@@ -94,7 +94,7 @@ def contact(
     >>> worm = Thread(profile="ZA", starts=1, axial_module=2.5, reference_diameter=30.0, tip_diameter=35.0,
     ...               pressure_angle=math.radians(20.0), thickness=math.pi * 1.25)
     >>> blank = Blank(face_width=16.0, throat_diameter=105.0, throat_radius=12.5, outside_diameter=107.5)
-    >>> flank = wheel_flank(Pair(thread=worm, teeth=40, centre_distance=65.0), blank, rows=24, columns=33)
+    >>> flank = wheel_flank(Pair(thread=worm, teeth=40, centre_distance=65.0), blank, rows=32, columns=33)
     >>> full = contact(flank, flank.angle + 1e-4, film=0.006)  # an exact flank, backlash besides
     >>> round(full.share, 2), full.transmission_error < 2e-4
     (1.0, True)

@@ -100,7 +100,7 @@ def wheel_flank(pair: Pair, blank: Blank, *, side: Side = 1, rows: int = ROWS, c
         raise ValueError("a grid of fewer than 8 rows or columns shows nothing: 30 and more are usual")
     z = np.linspace(-blank.face_width / 2.0, blank.face_width / 2.0, columns)
     bottom, top = ends_of_flank(pair, blank, z)
-    up = (np.arange(rows) + 0.5) / rows
+    up = np.linspace(1e-6, 1.0, rows)  # the tooth's tip is a row of its own: its edge carries where a flank is wrong
     r = bottom + (top - bottom) * up[:, np.newaxis]
     planes = np.broadcast_to(z, r.shape)
     gap = conjugate_gap(pair, r, planes, side=side)
@@ -113,8 +113,9 @@ def wheel_flank(pair: Pair, blank: Blank, *, side: Side = 1, rows: int = ROWS, c
     square = 1.0 / np.sqrt(1.0 + up_profile**2 + along**2)
     step = np.full(columns, z[1] - z[0])
     step[[0, -1]] /= 2.0
-    high = (top - bottom) / rows
+    high = (top - bottom) / (rows - 1) * np.ones_like(r)
     touched = np.clip((r - first_contact(pair, z, side=side)) / high + 0.5, 0.0, 1.0)
+    touched[-1] /= 2.0
     return Flank(
         pair=pair,
         blank=blank,

@@ -81,7 +81,7 @@ def test_a_left_hand_pair_is_the_mirror_image() -> None:
 def test_crowning_and_twist_of_the_map_are_those_of_the_second_order(case: int, alpha: float, radius: float) -> None:
     starts, m, d1, teeth, _ = SIZES[case]
     wheel, cut = Wheel(pair_of(case, alpha=alpha), blank_of(case)), cut_of(case, radius)
-    a, b, _ = second_order(wheel.map(cut, wheel.insert(cut, "mid-plane")))
+    a, b, c0 = second_order(wheel.map(cut, wheel.insert(cut, "mid-plane")))
     plunge = cutter.Plunge(
         pitch_diameter=d1,
         wheel_diameter=m * teeth,
@@ -90,9 +90,10 @@ def test_crowning_and_twist_of_the_map_are_those_of_the_second_order(case: int, 
         gap_arc=math.pi * m / 2.0,
         oversize=radius - d1 / 2.0 - 1.2 * m,
     )
-    assert cutter.crowning(plunge) < a
-    assert a == pytest.approx(cutter.crowning(plunge), rel=0.03)
-    assert b == pytest.approx(cutter.twist(plunge), rel=0.03)
+    assert 0.965 < cutter.crowning(plunge) / a < 1.0
+    assert b == pytest.approx(cutter.twist(plunge), rel=0.005)
+    point = exact_gap.Pair(starts, m, d1, teeth, math.radians(alpha), radius, math.atan(starts * m / d1))
+    assert (a, b, c0) == pytest.approx(point.crowning_and_twist(), rel=2e-3)
 
 
 def test_a_thinner_thread_makes_a_thinner_insert_but_not_evenly() -> None:
