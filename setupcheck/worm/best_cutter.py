@@ -23,8 +23,9 @@ from setupcheck.worm.wheel_flank import Blank, Flank, wheel_flank
 ROWS, COLUMNS, PLANES = 32, 65, 49
 """Grid of the scan: shares within 1 % of one twice as fine (tests/unit/worm). Chosen here."""
 
-CLEAR = 0.005
-"""Marked share of the end columns below which the ends count as clear. Our screening choice: what the grid of the scan shows."""
+CLEAR = 0.0125
+"""Marked share of both end columns up to which the ends count as clear: one tooth corner, 2.5 % of the flank high, which
+deburring takes away. An envelope touches the corner that stands out farthest. Our screening choice."""
 
 LARGEST = 3.0
 """Largest radius looked at, in worm tip radii: beyond it contact only shrinks, by a few per cent. Chosen here."""

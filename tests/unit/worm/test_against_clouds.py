@@ -75,8 +75,8 @@ def test_ease_off_is_the_smallest_distance_to_the_turning_worm(
 
 @pytest.mark.parametrize(("radius", "kind", "error"), [(29.75, "envelope", 0.0), (40.0, "mid-plane", 21.3)])
 def test_transmission_error_and_marking_are_those_of_the_clouds(radius: float, kind: str, error: float) -> None:
-    flank = Flank(radius, kind, 140)
-    out = run(flank.points, WORM, centre=65.0, teeth=40, step=0.1, places=PLACES)
+    flank = Flank(radius, kind, 96)
+    out = run(flank.points, WORM, centre=65.0, teeth=40, step=0.15, places=PLACES)
     free = np.where(out.distance < FAR / 2.0, out.distance / out.arm, FAR)  # how far the wheel may turn back [rad]
     phase = np.round(PLACES / (2.0 * math.pi / PHASES)).astype(int) % PHASES
     lag = np.full(PHASES, FAR)
@@ -85,7 +85,7 @@ def test_transmission_error_and_marking_are_those_of_the_clouds(radius: float, k
     ours = WHEEL.run(flank.cut, flank.insert)
     assert np.ptp(lag) * 50.0 == pytest.approx(ours.transmission_error, abs=0.4 * MICRON)
     assert np.ptp(lag) * 50.0 == pytest.approx(error * MICRON, abs=0.4 * MICRON)
-    # a worm turned on goes the other way along its axis: the same phases backwards
-    assert lag[(-np.arange(PHASES)) % PHASES] * 50.0 == pytest.approx(ours.lag, abs=0.5 * MICRON)
+    # a worm turned on goes the other way along its axis: the same phases backwards; the cloud ends up to a row below the tip
+    assert lag[(-np.arange(PHASES)) % PHASES] * 50.0 == pytest.approx(ours.lag, abs=1.5 * MICRON)
     marked = float(flank.area[nearest <= FILM].sum())
     assert marked == pytest.approx(ours.share * float(WHEEL.flank.area.sum()), rel=0.02)

@@ -1,9 +1,9 @@
 """Contact of plunged wheels: figures computed earlier for this project by an independent prototype, kept as regression data.
 
 No open source with such numbers was found. Prototype and this package share the mathematics of the gap but no code; film
-6 um, addendum one module, clearance 0.2 m, equal split, right hand, throat r1 - m clipped at r2 + 1.5 m, tilt = lead angle. The prototype's rows of points ended half a step below the tooth's tip;
-ours end on it, where an edge carries, so that our errors of inserts without an envelope come out up to 7 % (1 um) higher and
-hold at any grid.
+6 um, addendum one module, clearance 0.2 m, equal split, right hand, throat r1 - m clipped at r2 + 1.5 m, tilt = lead angle.
+The prototype's rows of points ended half a step below the tooth's tip; ours end on it, where an edge carries, so that our
+errors of inserts without an envelope come out up to 7 % (1 um) higher and hold at any grid.
 """
 
 from __future__ import annotations

@@ -10,6 +10,7 @@ import pytest
 
 from setupcheck.worm import cutter
 from setupcheck.worm.ease_off import second_order
+from setupcheck.worm.insert import insert_widths
 from setupcheck.worm.plunge_gap import Cut, Insert, cut_gap, measured_insert, on_cutter, revolved
 from setupcheck.worm.wheel_flank import Blank, wheel_flank
 
@@ -103,6 +104,28 @@ def test_a_thinner_thread_makes_a_thinner_insert_but_not_evenly() -> None:
     a, b = full.insert(cut, "mid-plane"), thin.insert(cut, "mid-plane")
     assert a.width(3.0) - b.width(3.0) == pytest.approx(0.2025, abs=2e-4)
     assert a.width(0.0) - b.width(0.0) == pytest.approx(0.1883, abs=2e-4)
+
+
+@pytest.mark.parametrize(("case", "alpha", "radius"), [(1, 20.0, 29.75), (3, 15.0, 19.4), (4, 20.0, 46.0)])
+def test_the_mid_plane_insert_has_the_widths_of_the_closed_form(case: int, alpha: float, radius: float) -> None:
+    _, m, d1, teeth, _ = SIZES[case]
+    wheel, cut = Wheel(pair_of(case, alpha=alpha), blank_of(case)), cut_of(case, radius)
+    heights = [k * m for k in (0.0, 0.2, 0.7, 1.2, 2.2)]
+    closed = insert_widths(
+        heights,
+        axial_module=m,
+        wheel_teeth=teeth,
+        centre_distance=(d1 + m * teeth) / 2.0,
+        worm_tip_diameter=d1 + 2.0 * m,
+        clearance=0.2 * m,
+        pressure_angle=math.radians(alpha),
+        gap_arc=math.pi * m / 2.0,
+        tilt=cut.tilt,
+        cutter_radius=radius,
+    )
+    ours = wheel.insert(cut, "mid-plane")
+    assert [ours.width(h) for h in heights[2:]] == pytest.approx(closed[2:], abs=2e-6)
+    assert [ours.width(h) for h in heights[:2]] == pytest.approx(closed[:2], abs=1e-3)  # the tangent, in another frame
 
 
 def test_measured_points_of_an_envelope_leave_its_gap() -> None:
