@@ -33,11 +33,13 @@ class Mounting:
 
     distance  centre distance more than the pair's;  axial  the wheel's mid-plane from the worm's axis, along +z
     crossing  angle between the axes more than a right angle: the worm turned about the line of centres, x towards z
+    lean      of the wheel about the worm's direction: the +z end of its face away from the worm
     """
 
     distance: float = 0.0
     axial: float = 0.0
     crossing: float = 0.0
+    lean: float = 0.0
 
 
 AS_CUT = Mounting()
@@ -85,7 +87,7 @@ def contact(
     cut_angle  angle of the flank as cut at the points of the grid [rad], (rows, columns)
     film       thickness of the marking film, square to the flank [mm], usually 0.005 to 0.007
     All teeth are taken alike: what one tooth does a pitch later, its neighbour does now.
-    Raises: ValueError for a film not above zero or fewer than 6 phases.
+    Raises: ValueError for a film not above zero, fewer than 6 phases, or a worm that misses the flank.
     Source: derived here: gap along x of the cut flank's points to the rack, least over the flank and over neighbouring teeth.
 
     >>> from setupcheck.worm.conjugate import Pair
@@ -102,16 +104,19 @@ def contact(
     above_zero(film=film)
     if phases < 6:
         raise ValueError("fewer than 6 phases in a pitch miss what happens between: 24 are usual")
-    gaps, first = _gaps(flank, cut_angle, mounting, phases)
+    play = float(np.min((flank.side * (cut_angle - flank.angle))[flank.inside]))  # taken up at once, the rest is small
+    gaps, first = _gaps(flank, cut_angle - flank.side * play, mounting, phases)
     least = np.array([_least(g) for g in gaps])
     phase = (first + np.arange(len(gaps))) % phases
     lag = np.full(phases, FAR)
     np.minimum.at(lag, phase, least)
+    if lag.max() > FAR / 2.0:
+        raise ValueError("the worm misses this flank at some of its positions: its mounting is too far off")
     nearest = np.full(flank.r.shape, FAR)
     for g, k in zip(gaps, phase, strict=True):
         np.minimum(nearest, g - lag[k], out=nearest)
     nearest *= flank.square * flank.r / flank.pair.rolling
-    return _contact(flank, lag, nearest, film)
+    return _contact(flank, lag + play * flank.pair.rolling, nearest, film)
 
 
 def _gaps(flank: Flank, cut_angle: Array, mounting: Mounting, phases: int) -> tuple[list[Array], int]:
@@ -134,6 +139,8 @@ def _gap(flank: Flank, x: Array, y: Array, travel: float, mounting: Mounting) ->
     """Gap along the worm's axis between points of the wheel and the rack at one travel [mm]."""
     thread = flank.pair.thread
     z = np.broadcast_to(flank.z + mounting.axial, x.shape)
+    if mounting.lean:
+        z, y = z + mounting.lean * (y - flank.pair.rolling), y - mounting.lean * flank.z
     if mounting.crossing:
         s, c = math.sin(mounting.crossing), math.cos(mounting.crossing)
         x, z = x * c + z * s, z * c - x * s

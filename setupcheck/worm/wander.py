@@ -20,6 +20,7 @@ class RingError:
     eccentricity  of the ring's axis, and the angle on the wheel towards which it lies, `eccentric_at`
     run_out       axial run-out of the ring over a turn at the rolling circle (highest less lowest), and the angle on the
                   wheel at which it stands farthest towards +z, `run_out_at`
+    Angles on the wheel count from the line of centres (+y) towards +x.
     Raises: ValueError for an eccentricity or run-out below zero.
 
     >>> RingError(eccentricity=0.02).mounting(math.pi, 50.0, Mounting()).distance
@@ -37,17 +38,19 @@ class RingError:
     def mounting(self, at: float, rolling: float, housing: Mounting) -> Mounting:
         """How the teeth at an angle of the wheel stand in the mesh.
 
-        distance - e cos(at - phi_e);  axial + (w/2) cos(at - phi_w);  crossing + w/(2 r2) sin(at - phi_w)
+        distance - e cos(at - phi_e);  axial + (w/2) cos(at - phi_w)
+        lean + w/(2 r2) cos(at - phi_w);  crossing + w/(2 r2) sin(at - phi_w)
         rolling  radius r2 of the rolling circle [mm];  housing  what is wrong besides
-        Source: rigid shift and lean of the ring, first order; derived here. The lean that is seen along the line of centres
-        crosses the axes, a quarter of a turn after the largest axial stand. The shift along the worm is pitch error: it
-        turns the wheel and moves no marking.
+        Source: rigid shift and lean of the ring, first order; derived here. The lean about the line of centres crosses the
+        axes, a quarter of a turn after the largest axial stand. The shift along the worm is pitch error: it turns the wheel
+        and moves no marking.
         """
         eccentric, lean = at - self.eccentric_at, at - self.run_out_at
         return Mounting(
             distance=housing.distance - self.eccentricity * math.cos(eccentric),
             axial=housing.axial + self.run_out / 2.0 * math.cos(lean),
             crossing=housing.crossing + self.run_out / (2.0 * rolling) * math.sin(lean),
+            lean=housing.lean + self.run_out / (2.0 * rolling) * math.cos(lean),
         )
 
 

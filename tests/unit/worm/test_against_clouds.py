@@ -88,4 +88,4 @@ def test_transmission_error_and_marking_are_those_of_the_clouds(radius: float, k
     # a worm turned on goes the other way along its axis: the same phases backwards; the cloud ends up to a row below the tip
     assert lag[(-np.arange(PHASES)) % PHASES] * 50.0 == pytest.approx(ours.lag, abs=1.5 * MICRON)
     marked = float(flank.area[nearest <= FILM].sum())
-    assert marked == pytest.approx(ours.share * float(WHEEL.flank.area.sum()), rel=0.02)
+    assert marked == pytest.approx(ours.share * float(WHEEL.flank.area.sum()), rel=0.03)

@@ -8,7 +8,8 @@ import numpy as np
 import pytest
 
 from setupcheck.worm.best_cutter import best_cutter, candidate, tolerances, workbench
-from setupcheck.worm.meshing import Contact, Mounting, contact
+from setupcheck.worm.helicoid import flank as worm_flank
+from setupcheck.worm.meshing import Contact, Mounting, _gap, contact
 from setupcheck.worm.wander import RingError, round_the_wheel
 
 from .wheels import ARCMIN, FILM, MICRON, Wheel, blank_of, cut_of, pair_of
@@ -28,6 +29,20 @@ def test_an_exact_flank_is_marked_everywhere_and_runs_true_whatever_its_backlash
         assert out.ends > 0.9  # all but what the thread's flank does not touch there
         assert out.transmission_error < 0.1 * MICRON
         assert out.lag.mean() == pytest.approx(50.0 * backlash, abs=0.1 * MICRON)
+
+
+def test_a_worm_far_off_the_wheel_is_refused() -> None:
+    flank = Wheel(pair_of(), blank_of()).flank
+    with pytest.raises(ValueError, match="misses this flank"):
+        contact(flank, flank.angle, film=FILM, mounting=Mounting(distance=8.0))
+
+
+def test_a_wide_gap_runs_as_a_tight_one() -> None:
+    flank = Wheel(pair_of(), blank_of()).flank
+    k = 1e-3 * flank.roll / 50.0
+    tight, wide = (contact(flank, flank.angle + k + play, film=FILM) for play in (0.0, 0.01))
+    assert wide.share == pytest.approx(tight.share, rel=1e-6)
+    assert wide.lag - tight.lag == pytest.approx(np.full(24, 0.5), abs=1e-6)
 
 
 def test_a_straight_lean_of_the_profile_is_the_transmission_error_of_one_pitch() -> None:
@@ -132,6 +147,26 @@ def test_a_small_eccentricity_moves_the_marking_hardly_at_all() -> None:
     assert 0.0 < out.up_flank < 0.1
     lags = [c.lag.mean() for c in out.contacts]  # backlash goes with the distance: e tan(alpha) either way on a flank
     assert np.ptp(lags) == pytest.approx(2.0 * 0.02 * math.tan(math.radians(20.0)), rel=0.02)
+
+
+@pytest.mark.parametrize("at", [0.0, 0.9, 2.5])
+def test_the_mounting_of_a_leaning_ring_is_its_turn_in_space(at: float) -> None:
+    """Points of the ring turned as a whole by a small rotation, against what the mounting does to the gap."""
+    flank = Wheel(pair_of(), blank_of(), rows=20, columns=21).flank
+    rolling, run_out, phi = flank.pair.rolling, 0.04, 0.4
+    z = np.broadcast_to(flank.z, flank.r.shape)
+    x, y = flank.r * np.sin(flank.angle), flank.r * np.cos(flank.angle)
+    # the lean that lifts the ring by (w/2) cos(at + th - phi) at the angle th from the line of centres
+    about_x, about_y = (run_out / (2.0 * rolling) * f(at - phi) for f in (math.cos, math.sin))
+    there = (x + about_y * z, y - about_x * z, z + about_x * y - about_y * x)
+    h = flank.pair.centre_distance - there[1]
+    rigid = there[0] - worm_flank(flank.pair.thread, h, there[2], side=1)
+    mounting = RingError(run_out=run_out, run_out_at=phi).mounting(at, rolling, Mounting())
+    ours = _gap(flank, x, y, 0.0, mounting)
+    still = _gap(flank, x, y, 0.0, Mounting())
+    seen = still < 1e3
+    moved = np.abs(ours - still)[seen & (ours < 1e3)].max()
+    assert np.abs(ours - rigid)[seen & (ours < 1e3)].max() < 0.02 * moved
 
 
 def test_a_ring_mounted_half_a_turn_on_is_the_same_wheel_seen_half_a_turn_on() -> None:
