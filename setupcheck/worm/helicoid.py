@@ -69,7 +69,7 @@ class Thread:
         if self.hand not in ("right", "left"):
             raise ValueError(f"the hand of a worm is right or left, not {self.hand}")
         above_zero(starts=self.starts, axial_module=self.axial_module, reference_diameter=self.reference_diameter)
-        above_zero(thickness=self.thickness)
+        above_zero(thickness=self.thickness, thickness_at=self.thickness_at or self.reference_diameter)
         steep_enough(pressure_angle=self.pressure_angle, lead_angle=math.atan(self.lead / self.radius))
         if not self.tip > self.radius:
             raise ValueError(

@@ -27,9 +27,10 @@ class Cut:
 
     radius      from the axis of the bar to the insert's tip, along the insert's face
     tilt        of the cutter's axis, positive the way the hand needs
-    clearance   the tip's circle below the worm's tip, at the pair's centre distance
+    clearance   the circle of the tip below the worm's tip, at the pair's centre distance, as touched off; where the depth
+                comes from the bar's radius instead, a tip off its axis is off_centre^2/(2 R) deeper
     offset      plane of the cutter from the wheel's mid-plane, along +z
-    off_centre  insert's face from the axis of the bar
+    off_centre  insert's face from the axis of the bar; above and below centre act alike but for `raked` and `swung`
     turned      insert turned in its own face about the middle of its tip, its wide end towards +v
     raked       face turned about the line across its tip (rake), so that heights shorten
     swung       face turned about the radial line, so that widths shorten

@@ -8,9 +8,11 @@ import numpy as np
 import pytest
 
 from setupcheck.worm.best_cutter import best_cutter, candidate, tolerances, workbench
+from setupcheck.worm.gap_insert import sections
 from setupcheck.worm.helicoid import flank as worm_flank
 from setupcheck.worm.meshing import Contact, Mounting, _gap, contact
 from setupcheck.worm.wander import RingError, round_the_wheel
+from setupcheck.worm.wheel_flank import wheel_flank
 
 from .wheels import ARCMIN, FILM, MICRON, Wheel, blank_of, cut_of, pair_of
 
@@ -239,6 +241,25 @@ def test_a_face_too_narrow_for_any_cutter_gets_a_curve_and_no_radius() -> None:
 def test_a_budget_below_what_the_cutter_leaves_anyway_tolerates_nothing() -> None:
     bench = workbench(pair_of(), blank_of(), clearance=0.5, film=FILM)
     assert tolerances(bench, 24.0, budget=1e-5)["tilt"].either == 0.0
+
+
+def test_grids_and_phases_too_coarse_to_show_anything_are_refused() -> None:
+    wheel = Wheel(pair_of(), blank_of())
+    with pytest.raises(ValueError, match="fewer than 8 rows or columns"):
+        wheel_flank(wheel.pair, wheel.blank, rows=4)
+    with pytest.raises(ValueError, match="fewer than 9 planes"):
+        sections(wheel.pair, wheel.blank, planes=5)
+    with pytest.raises(ValueError, match="fewer than 6 phases"):
+        contact(wheel.flank, wheel.flank.angle, film=FILM, phases=3)
+    with pytest.raises(ValueError, match="at least 3 places"):
+        round_the_wheel(wheel.flank, wheel.flank.angle, film=FILM, errors=RingError(), angles=2)
+    with pytest.raises(ValueError, match="two points or more"):
+        best_cutter(wheel.pair, wheel.blank, clearance=0.5, film=FILM, budget=0.005, curve_points=1)
+
+
+def test_a_ring_error_below_zero_is_refused() -> None:
+    with pytest.raises(ValueError, match="eccentricity must not be below zero"):
+        RingError(eccentricity=-0.01)
 
 
 @pytest.mark.parametrize(
