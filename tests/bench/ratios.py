@@ -113,6 +113,55 @@ def many_jobs() -> None:
     print(f" = {many() / (single * 200):5.2f}   aim about 1")
 
 
+def worm_contact() -> None:
+    """Contact of a worm wheel and the recommended cutter, in multiples of 10 million square roots and arc tangents of numpy.
+
+    The multiples say how much arithmetic a map costs whatever the machine; four times the points should cost four times.
+    """
+    import math
+
+    import numpy as np
+
+    from setupcheck.worm.best_cutter import best_cutter
+    from setupcheck.worm.conjugate import Pair
+    from setupcheck.worm.ease_off import ease_off
+    from setupcheck.worm.gap_insert import envelope_insert, sections
+    from setupcheck.worm.helicoid import Thread
+    from setupcheck.worm.meshing import contact
+    from setupcheck.worm.plunge_gap import Cut
+    from setupcheck.worm.wheel_flank import COLUMNS, ROWS, Blank, wheel_flank
+
+    worm = Thread(
+        profile="ZA",
+        starts=1,
+        axial_module=2.5,
+        reference_diameter=30.0,
+        tip_diameter=35.0,
+        pressure_angle=math.radians(20.0),
+        thickness=math.pi * 1.25,
+    )
+    pair = Pair(thread=worm, teeth=40, centre_distance=65.0)
+    blank = Blank(face_width=16.0, throat_diameter=105.0, throat_radius=12.5, outside_diameter=107.5)
+    cut = Cut(radius=30.0, tilt=math.atan(1.0 / 12.0), clearance=0.5)
+    x = np.linspace(0.0, 1.0, 100_000)
+
+    def kernel() -> None:
+        for _ in range(100):
+            np.arctan(np.sqrt(x))
+
+    def both_flanks(rows: int, columns: int) -> None:
+        insert = envelope_insert(sections(pair, blank), cut)
+        for side in (1, -1):
+            flank = wheel_flank(pair, blank, side=side, rows=rows, columns=columns)  # type: ignore[arg-type]
+            contact(flank, ease_off(flank, insert, cut).angle, film=0.006)
+
+    usual, fine = timed(lambda: both_flanks(ROWS, COLUMNS)), timed(lambda: both_flanks(2 * ROWS, 2 * COLUMNS))
+    ratio("contact map of both flanks / numpy kernel", usual, timed(kernel), "under 4", runs=7)
+    ratio("contact map with four times the points / the usual one", fine, usual, "about 4, under 6", runs=7)
+    recommend = timed(lambda: best_cutter(pair, blank, clearance=0.5, film=0.006, budget=0.005))
+    ratio("recommended cutter / numpy kernel", recommend, timed(kernel), "under 50", runs=5)
+
+
 if __name__ == "__main__":
     ratio(
         "setupcheck --help / import typer",
@@ -128,3 +177,4 @@ if __name__ == "__main__":
     )
     random_numbers()
     many_jobs()
+    worm_contact()
