@@ -14,13 +14,16 @@ from setupcheck.record import record
 from setupcheck.worm.conjugate import Pair, Side, conjugate_gap, first_contact
 from setupcheck.worm.geometry import above_zero, not_below_zero, steep_enough
 from setupcheck.worm.helicoid import Array
-from setupcheck.worm.plunge_gap import Cut, Insert, curve, measured_insert, on_cutter
+from setupcheck.worm.plunge_gap import Cut, Insert, curve, on_cutter
 
-CERTAIN = 0.03
+CERTAIN = 0.02
 """Standard error of the strongest curvature, as a share of it, at which windows stop growing. Our screening choice."""
 
 FEWEST = 5
 """Points of the shortest window: three fix a parabola, two are left to tell the scatter. Our choice."""
+
+WIDEST_STEP = 0.25
+"""Step between two points over the whole height; beyond it the profile between is a guess. Our choice, as for inserts."""
 
 STRAIGHT = 1e4
 """Radii beyond so many heights of the profile are told as straight. Our choice: below the last bits of the points."""
@@ -79,6 +82,7 @@ def width_at(insert: Insert, height: float) -> float:
 
     Raises: ValueError for a height the profile does not reach.
 
+    >>> from setupcheck.worm.plunge_gap import measured_insert
     >>> h = np.linspace(0.0, 6.0, 13)
     >>> trapezium = measured_insert(h, 1.1 + 0.35 * h)
     >>> round(width_at(trapezium, 0.0), 3), round(width_at(trapezium, 2.2), 3)
@@ -92,6 +96,7 @@ def height_at(insert: Insert, width: float) -> float:
 
     Raises: ValueError for a width the profile does not have.
 
+    >>> from setupcheck.worm.plunge_gap import measured_insert
     >>> h = np.linspace(0.0, 6.0, 13)
     >>> round(height_at(measured_insert(h, 1.1 + 0.35 * h), 3.74), 6)
     2.2
@@ -112,9 +117,11 @@ def bends(heights: Array, half_width: Array) -> Bends:
     """Slope and curvature along a flank by local least squares, windows as long as the scatter of the points asks for.
 
     curvature = W''/(1 + W'^2)^(3/2), from a parabola through each window of neighbouring points. A window has at first 5
-    points and grows until the scatter leaves the strongest curvature uncertain by 3 %, to half of the points at most. A
+    points and grows until the scatter leaves the strongest curvature uncertain by 2 %, to half of the points at most. A
     parabola's second derivative is a mean of the profile's over the window, so it never tells a flank more hollow than it is.
-    Raises: ValueError for points that are no profile (see `measured_insert`).
+    Points may scatter, so a width may be a little less than the one below it.
+    Raises: ValueError for fewer than five points, a number that is missing, heights that do not rise, or a gap of more than
+    a quarter of the whole.
     Source: curvature of a plane curve and variance of least squares (textbook); size of windows chosen here.
 
     >>> h = np.linspace(0.0, 5.0, 51)
@@ -122,11 +129,11 @@ def bends(heights: Array, half_width: Array) -> Bends:
     >>> round(float(1.0 / arc.curvature[20]), 2)
     10.0
     """
-    checked = measured_insert(heights, half_width)
-    count = len(checked.heights)
-    size = FEWEST
+    heights, half_width = (np.asarray(v, dtype=float) for v in (heights, half_width))
+    _refuse_no_profile(heights, half_width)
+    count, size = len(heights), FEWEST
     while True:
-        found = _parabolas(checked.heights, checked.right, size)
+        found = _parabolas(heights, half_width, size)
         at = int(np.argmax(found.curvature))
         longer = size + 2 * max(1, size // 8)
         sure = found.error[at] <= CERTAIN * found.curvature[at]
@@ -151,6 +158,7 @@ def included_angle(insert: Insert, height: float) -> float:
     On a hollow flank it changes with the height, so it is worth nothing without it.
     Raises: ValueError for a height the profile does not reach.  Source: sum of both flanks' angles.
 
+    >>> from setupcheck.worm.plunge_gap import measured_insert
     >>> h = np.linspace(0.0, 6.0, 13)
     >>> round(math.degrees(included_angle(measured_insert(h, 1.1 + math.tan(math.radians(20.0)) * h), 3.0)), 6)
     40.0
@@ -166,6 +174,7 @@ def clearance_given(insert: Insert, *, pitch_width: float, addendum: float) -> f
     An insert whose tip was ground away gives less than was asked for; below zero the worm rides on the bottom of the gap.
     Raises: ValueError for sizes not above zero or a width the insert does not have.  Source: geometry.
 
+    >>> from setupcheck.worm.plunge_gap import measured_insert
     >>> h = np.linspace(0.0, 6.0, 13)
     >>> round(clearance_given(measured_insert(h, 1.1 + 0.35 * h), pitch_width=3.74, addendum=1.8), 3)
     0.4
@@ -181,6 +190,7 @@ def largest_corner(insert: Insert, clearance: float) -> float:
     clearance  of the tip below the worm's tip [mm], >= 0; the smaller of both flanks counts
     Raises: ValueError for a clearance below zero.  Source: circle that touches tip and flank, derived here.
 
+    >>> from setupcheck.worm.plunge_gap import measured_insert
     >>> h = np.linspace(0.0, 6.0, 13)
     >>> round(largest_corner(measured_insert(h, 1.1 + math.tan(math.radians(20.0)) * h), 0.4), 3)
     0.608
@@ -206,6 +216,7 @@ def smallest_hollow(insert: Insert, *, side: Side, live_from: float = 0.0, live_
     Raises: ValueError for fewer than five points between them, or points that are no profile.
     Source: local least squares (`bends`); involute: rho = rb t, ds = rb t dt (textbook).
 
+    >>> from setupcheck.worm.plunge_gap import measured_insert
     >>> h = np.linspace(0.0, 5.0, 51)
     >>> arc = measured_insert(h, 11.0 - np.sqrt(100.0 - (h + 1.0) ** 2))
     >>> round(smallest_hollow(arc, side=1).radius, 1)
@@ -218,11 +229,12 @@ def smallest_hollow(insert: Insert, *, side: Side, live_from: float = 0.0, live_
             f"tell a radius"
         )
     heights = insert.heights[live]
-    found = bends(heights - heights[0], half_widths(insert, side)[live])
+    found = bends(heights, half_widths(insert, side)[live])
     at = int(np.argmax(found.curvature))
-    strongest, error, where = float(found.curvature[at]), float(found.error[at]), float(heights[0] + found.heights[at])
-    for end, inner in ((0, 1), (-1, -2)) if len(found.heights) > 1 else ():
-        beyond = _continued(found, end, inner, float(heights[end] - heights[0]))
+    strongest, error, where = (float(v[at]) for v in (found.curvature, found.error, found.heights))
+    reach = (len(heights) - len(found.heights)) // 2
+    for end, inner in ((0, reach), (-1, -1 - reach)) if len(found.heights) > reach else ():
+        beyond = _continued(found, end, inner, float(heights[end]))
         if beyond > strongest:
             strongest, error, where = beyond, 3.0 * float(found.error[end]), float(heights[end])
     return Hollow(radius=_radius(strongest, heights), height=where, at_least=_radius(strongest + 2.0 * error, heights))
@@ -268,6 +280,26 @@ def contact_begins(pair: Pair, cut: Cut) -> float:
     return cut.radius - float(rc[0])
 
 
+def _refuse_no_profile(heights: Array, half_width: Array) -> None:
+    if heights.ndim != 1 or heights.shape != half_width.shape or len(heights) < FEWEST:
+        raise ValueError("a flank needs at least five points: a height above the tip and a half width for each")
+    if not (np.isfinite(heights).all() and np.isfinite(half_width).all()):
+        raise ValueError("a height or width of the flank is missing: every point needs both its numbers")
+    steps = np.diff(heights)
+    if not np.all(steps > 0.0):
+        at = int(np.argmin(steps))
+        raise ValueError(
+            f"after {heights[at]:g} mm comes {heights[at + 1]:g} mm: a loop, or points out of order; heights must rise from "
+            f"point to point"
+        )
+    if steps.max() > WIDEST_STEP * (heights[-1] - heights[0]):
+        at = int(np.argmax(steps))
+        raise ValueError(
+            f"between {heights[at]:g} and {heights[at + 1]:g} mm the flank has no points: steps of a quarter of its height at "
+            f"most"
+        )
+
+
 def _parabolas(heights: Array, widths: Array, size: int) -> Bends:
     """Least-squares parabola through every run of `size` neighbouring points."""
     h = np.lib.stride_tricks.sliding_window_view(heights, size)
@@ -296,9 +328,9 @@ def _parabolas(heights: Array, widths: Array, size: int) -> Bends:
 
 
 def _continued(found: Bends, end: int, inner: int, place: float) -> float:
-    """Curvature at an end of the profile, half a window beyond the last one; 0 where the curvature does not rise there."""
+    """Curvature at an end of the profile, half a window beyond the last one; 0 where no rise stands out of the scatter."""
     outer, before = float(found.curvature[end]), float(found.curvature[inner])
-    if not outer > before > 3.0 * float(found.error[inner]) or before <= 0.0:
+    if before <= 0.0 or not outer - before > 3.0 * float(found.error[end] + found.error[inner]):
         return 0.0
     share = (place - float(found.heights[end])) / float(found.heights[end] - found.heights[inner])
     squared = outer**-2 + (outer**-2 - before**-2) * share
