@@ -16,10 +16,7 @@ from setupcheck.worm.geometry import above_zero
 from setupcheck.worm.helicoid import Array
 from setupcheck.worm.insert_profile import slope_and_width
 from setupcheck.worm.plunge_gap import Insert
-from setupcheck.worm.wheel_edge import cusps, refuse_gouging, wheel_centres
-
-FINE = 2001
-"""Heights over which lengths along a flank are summed; 1e-6 of the whole is kept. Chosen here."""
+from setupcheck.worm.wheel_edge import along_flank, cusps, refuse_gouging, wheel_centres
 
 MOST_POINTS = 2000
 """More points than anybody grinds by hand: more are refused as a slip of the pen. Our screening choice."""
@@ -96,7 +93,7 @@ def equal_chords(insert: Insert, count: int, *, side: Side) -> Array:
     >>> [round(float(v), 4) for v in equal_chords(measured_insert(h, 1.0 + 0.75 * h), 4, side=1)]
     [0.0, 2.0, 4.0, 6.0]
     """
-    fine, _, length = _along(insert, side)
+    fine, _, length = along_flank(insert, side)
     return _shared_out(fine, length, count)
 
 
@@ -176,7 +173,7 @@ def coordinates(
 ) -> Coordinates:
     """Table of a flank for points at heights above the tip, (n,), n >= 2: rounded readings and what form error is left.
 
-    The form error adds to each cusp the mean rounding of its two points, and takes the deepest rounding for itself.
+    The form error is that of the highest cusp, with what rounding does to both its points, or of the deepest point.
     Raises: ValueError as `readings` does, and for fewer than two points.
     Source: rounding along the normal (cos psi, -sin psi), derived here.
 
@@ -197,7 +194,7 @@ def coordinates(
     psi = np.arctan(slope)
     rounding = (across - exact[0]) * np.cos(psi) - (along - exact[1]) * np.sin(psi)
     between = cusps(insert, heights, wheel_radius=wheel_radius, side=side)
-    highest = float((between + 0.5 * (rounding[1:] + rounding[:-1])).max())
+    highest = float(_tops(between, rounding).max())
     return Coordinates(
         heights=heights,
         half_widths=width,
@@ -225,20 +222,25 @@ def wheel_radius_error(insert: Insert, heights: Array, *, error: float, side: Si
     return error * (np.cos(psi) + np.sin(psi) - 1.0)
 
 
-def _along(insert: Insert, side: Side) -> tuple[Array, Array, Array]:
-    """Heights close together, the flank's angle there and its length from the tip; (FINE,) each."""
-    fine = np.linspace(insert.heights[0], insert.heights[-1], FINE)
-    slope, width = slope_and_width(insert, fine, side=side)
-    length = np.concatenate([[0.0], np.cumsum(np.hypot(np.diff(fine), np.diff(width)))])
-    return fine, np.arctan(slope), length
-
-
 def _cusp_weight(insert: Insert, wheel_radius: float, side: Side) -> tuple[Array, Array]:
-    """Heights, and the sum of sqrt(1/r - 1/rho) ds up to each; (FINE,)."""
-    fine, psi, length = _along(insert, side)
+    """Heights, and the sum of sqrt(1/r - 1/rho) ds up to each; (n,)."""
+    fine, psi, length = along_flank(insert, side)
     ds = np.diff(length)
     parts = np.sqrt(np.maximum(ds * (ds / wheel_radius - np.diff(psi)), 0.0))
     return fine, np.concatenate([[0.0], np.cumsum(parts)])
+
+
+def _tops(between: Array, rounding: Array) -> Array:
+    """Height of each cusp when the points beside it stand off by their rounding; (n - 1,).
+
+    Two parabolas of cusp c, one d deeper than the other, meet at the mean + c + d^2/(16 c); from d = 4 c on the deeper one
+    takes the other's place as well.
+    """
+    first, second = rounding[:-1], rounding[1:]
+    apart = np.abs(second - first)
+    meet = apart < 4.0 * between
+    over = np.square(apart) / (16.0 * np.where(meet, between, 1.0))
+    return np.where(meet, 0.5 * (first + second) + between + over, np.maximum(first, second))
 
 
 def _shared_out(fine: Array, sum_so_far: Array, count: int) -> Array:

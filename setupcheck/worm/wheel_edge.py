@@ -20,6 +20,9 @@ from setupcheck.worm.plunge_gap import Insert
 FINE = 1001
 """Heights at which a flank is looked at for what a wheel cannot reach; 1e-6 mm are kept. Chosen here."""
 
+BETWEEN = 201
+"""Places looked at between two plunges; a cusp is found to 1 %, one on even curvature exactly. Chosen here."""
+
 LEFT = 0.002
 """Metal a wheel may leave in a hollow [mm]: half of what a projector shows at 50:1. Our screening choice."""
 
@@ -144,8 +147,9 @@ def refuse_gouging(insert: Insert, *, wheel_radius: float, side: Side, left: flo
 def cusps(insert: Insert, heights: Array, *, wheel_radius: float, side: Side) -> Array:
     """Metal left standing between neighbouring plunges of the wheel at heights (n,), square to the flank [mm], (n - 1,).
 
-    s^2/8 (1/r - 1/rho): sagitta of the wheel less that of the flank over the chord s; with 1/rho the mean over the chord,
-    (change of psi)/s. A straight flank leaves s^2/(8 r), one as hollow as the wheel is round leaves nothing.
+    Along the flank, t from a plunge, the wheel stands off by t^2/(2 r) less what the flank bends away from its tangent there;
+    the cusp is where the two wheels meet. On a flank of even curvature s^2/8 (1/r - 1/rho), s the chord: a straight one
+    leaves s^2/(8 r), one as hollow as the edge is large leaves nothing.
     Validity: s well below r; at s = r/2 it is 2 % low.
     Raises: ValueError for heights that do not rise, or plunges so far apart that they do not meet.
     Source: derived here; tests/unit/worm compares it with discs taken out of the metal one by one.
@@ -156,16 +160,36 @@ def cusps(insert: Insert, heights: Array, *, wheel_radius: float, side: Side) ->
     >>> [round(1e3 * float(c), 3) for c in cusps(flat, np.array([0.0, 0.16, 0.48]), wheel_radius=5.0, side=1)]
     [1.0, 4.0]
     """
-    above_zero(wheel_radius=wheel_radius)
-    slope, width = slope_and_width(insert, heights, side=side)
     if not np.all(np.diff(heights) > 0.0):
         raise ValueError("the heights of the points to be ground must rise from tip to top: sort them")
-    chord = np.hypot(np.diff(heights), np.diff(width))
-    if len(chord) and chord.max() >= 2.0 * wheel_radius:
+    centres = wheel_centres(insert, heights, wheel_radius=wheel_radius, side=side)
+    fine, psi, length = along_flank(insert, side)
+    bent = np.concatenate([[0.0], np.cumsum(0.5 * (psi[1:] + psi[:-1]) * np.diff(length))])
+    s, bent_there = np.interp(heights, fine, length), np.interp(heights, fine, bent)
+    apart = np.diff(s)
+    if len(apart) and apart.max() >= 2.0 * wheel_radius:
         raise ValueError(
-            f"points {chord.max():.3g} mm apart leave a wheel of {wheel_radius:g} mm edge radius no common metal: more points"
+            f"points {apart.max():.3g} mm apart leave a wheel of {wheel_radius:g} mm edge radius no common metal: more points"
         )
-    return np.maximum(chord / 8.0 * (chord / wheel_radius - np.diff(np.arctan(slope))), 0.0)
+    between = s[:-1, np.newaxis] + apart[:, np.newaxis] * np.linspace(0.0, 1.0, BETWEEN)
+    bends = np.interp(between, length, bent)
+
+    def stands_off(at: slice) -> Array:
+        t = between - s[at, np.newaxis]
+        bends_away = bends - bent_there[at, np.newaxis] - centres.psi[at, np.newaxis] * t
+        off = t * t / (2.0 * wheel_radius) - bends_away + (centres.lifted * np.cos(centres.psi))[at, np.newaxis]
+        return np.asarray(off, dtype=float)
+
+    lowest = np.minimum(stands_off(slice(None, -1)), stands_off(slice(1, None)))
+    return np.asarray(np.maximum(lowest.max(axis=1), 0.0), dtype=float)
+
+
+def along_flank(insert: Insert, side: Side) -> tuple[Array, Array, Array]:
+    """Heights close together, the flank's angle there [rad] and its length from the tip [mm]; (FINE,) each."""
+    fine = np.linspace(insert.heights[0], insert.heights[-1], FINE)
+    slope, width = slope_and_width(insert, fine, side=side)
+    length = np.concatenate([[0.0], np.cumsum(np.hypot(np.diff(fine), np.diff(width)))])
+    return fine, np.arctan(slope), length
 
 
 def _chord(off: Array, radius: float) -> Array:
