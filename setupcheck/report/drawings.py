@@ -118,7 +118,7 @@ class _Sheet:
         self.right = max(drawing.right[-1] * self.k, *farthest, 0.0)
         self.left = max(drawing.left[-1] * self.k, *farthest, 0.0)
         self.angle_text = show_angle(drawing.right_angle + drawing.left_angle, "dms", 0).replace("deg", "°")
-        figure = room(fixed(drawing.heights[-1], 3), SIZE) + 2.0
+        figure = room(fixed(drawing.heights[-1], 3), SIZE) + 3.0
         left = self.left + AWAY + max(figure, room(self.angle_text, SIZE) + 2.0)
         right = self.right + AWAY + figure
         self.lines = [
@@ -211,9 +211,9 @@ def _heights(sheet: _Sheet) -> list[str]:
     parts += [line((x - 1.0, y), (left - 1.5, y)) for x, y in (left_corner, pitch)]
     parts += _dimension((right, corner[1]), (right, top[1]))
     parts += _dimension((left, left_corner[1]), (left, pitch[1]))
-    parts.append(words((right + 1.5, 0.5 * (corner[1] + top[1]) + 0.35 * SIZE), fixed(d.heights[-1], 3)))
+    parts.append(words((right + 2.5, 0.5 * (corner[1] + top[1]) + 0.35 * SIZE), fixed(d.heights[-1], 3)))
     middle = 0.5 * (left_corner[1] + pitch[1]) + 0.35 * SIZE
-    parts.append(words((left - 1.5, middle), fixed(d.pitch_height, 3), anchor="end"))
+    parts.append(words((left - 2.5, middle), fixed(d.pitch_height, 3), anchor="end"))
     return parts
 
 
