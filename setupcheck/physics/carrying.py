@@ -7,7 +7,7 @@ import math
 from setupcheck.physics.heating import AIR_CONDUCTIVITY, REFERENCE_TEMPERATURE, Ring, cooled_temperature
 from setupcheck.record import record
 
-_COARSE = 24
+_COARSE = 10
 """Steps of the time integration where it is repeated to find a time; a test compares it with the fine one."""
 _LONGEST = 1e6
 """Seconds; a part that is not there after eleven days never is. Our choice."""
