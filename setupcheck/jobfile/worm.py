@@ -101,7 +101,8 @@ class Worm(Shop):
 class Mesh(Shop):
     """Worm and wheel where they work. `shift` is the wheel's profile shift factor, `serves_at` the drive's temperatures.
 
-    ball  diameter of the balls that the finished wheel is measured over [mm]
+    ball     diameter of the balls that the finished wheel is measured over [mm]
+    contact  `exact`: contact, transmission error and insert from the exact gap, which takes a second more
     """
 
     wheel: str
@@ -111,3 +112,4 @@ class Mesh(Shop):
     housing: Housing | None = None
     serves_at: Service | None = None
     ball: Size | None = None
+    contact: Literal["exact"] | None = None

@@ -11,6 +11,7 @@ from setupcheck.quantities.clamping import CLAMP
 from setupcheck.quantities.cutter_shape import SHAPE
 from setupcheck.quantities.cutting import CUTTING
 from setupcheck.quantities.division import DIVIDE
+from setupcheck.quantities.exact_gap import EXACT
 from setupcheck.quantities.growing import GROWING
 from setupcheck.quantities.head_setting import HEAD
 from setupcheck.quantities.heat_checks import HEAT_CHECKS
@@ -274,6 +275,7 @@ TABLES: tuple[Quantity, ...] = (
     *THROUGH,
     *CUTTING,
     *SHAPE,
+    *EXACT,
     *MESHING,
     *WORM,
     *THREAD,
