@@ -100,7 +100,7 @@ def _table(found: Review, scope: Scope, join: Join) -> Iterator[str]:
         yield f"  {label}".ljust(LABEL) + "".join(_cell(found, scope, f"fit.{state}_{c}") for c in COLUMNS)
     limits = {"most": "fit.elastic", "least": "fit.grip_needed"}
     row = "".join(_cell(found, scope, limits[c]) if c in limits else " " * CELL for c in COLUMNS)
-    yield "  at most, at least".ljust(LABEL) + row.rstrip()
+    yield "  allowed, needed".ljust(LABEL) + row.rstrip()
     for said in in_words(found, scope, BENEATH):
         yield from wrap(said, first="  - ", rest="    ")
 
