@@ -11,6 +11,9 @@ from typing import Annotated
 
 import typer
 
+LARGEST = 1000.0
+"""Largest enlargement that is drawn. Our choice: far beyond any sheet."""
+
 
 def command(
     job: Annotated[Path, typer.Argument(metavar="JOB", help="Job file (YAML).", show_default=False)],
@@ -25,11 +28,15 @@ def command(
 
     Example: setupcheck insert jobs/wheel-on-spindle.yaml --svg insert.svg --scale 20
     """
+    from setupcheck.errors import printable
     from setupcheck.flow import review
-    from setupcheck.report.insert import PAPERS, as_drawing, inserts, readings, the_insert
+    from setupcheck.report.insert import inserts, readings, the_insert
+    from setupcheck.report.insert_drawing import PAPERS, as_drawing
 
     if paper not in PAPERS:
         raise typer.BadParameter(f"write {' or '.join(PAPERS)}", param_hint="--paper")
+    if not 1.0 <= scale <= LARGEST:
+        raise typer.BadParameter(f"write 20 for 20:1; from 1 to {LARGEST:g}", param_hint="--scale")
     if svg is not None:
         _refuse_place(svg, force=force)
     found = review(job)
@@ -41,7 +48,9 @@ def command(
     table = [*readings(found)]
     sys.stdout.write("\n".join([*told, *([""] if table else []), *table]) + "\n")
     if svg is not None:
-        sys.stdout.write(f"\nwritten: {svg}, {scale:g}:1; print it at 100 % and measure the two check lines\n")
+        sys.stdout.write(
+            f"\nwritten: {printable(str(svg))}, {scale:g}:1\nPrint it at 100 % and measure the two check lines.\n"
+        )
 
 
 def _refuse_place(path: Path, *, force: bool) -> None:
@@ -54,28 +63,30 @@ def _refuse_place(path: Path, *, force: bool) -> None:
     if not path.parent.is_dir():
         raise SetupcheckError(f"{shown}: there is no folder {printable(str(path.parent))}. Make it first")
     if path.exists() and not force:
-        raise SetupcheckError(f"{shown} is already there and stays as it is. Write another name, or --force to replace it")
+        raise SetupcheckError(
+            f"{shown} is already there and stays as it is. Write another name, or --force to replace it"
+        )
 
 
 def _write(path: Path, text: str, *, force: bool) -> None:
     """The whole file at once: it is written beside its place and then moved there, so nobody ever meets half of it."""
     from setupcheck.errors import SetupcheckError, printable
 
-    beside = ""
+    beside: Path | None = None
     try:
-        handle, beside = tempfile.mkstemp(dir=path.parent, prefix=f".{path.name}.", suffix=".part")
+        handle, name = tempfile.mkstemp(dir=path.parent, prefix=f".{path.name}.", suffix=".part")
+        beside = Path(name)
         with os.fdopen(handle, "w", encoding="utf-8", newline="\n") as file:
             file.write(text)
-        os.chmod(beside, 0o666 & ~_umask())
+        beside.chmod(0o666 & ~_umask())
         _refuse_place(path, force=force)  # somebody may have written there meanwhile
-        os.replace(beside, path)
-        beside = ""
+        beside.replace(path)
     except OSError as why:
         raise SetupcheckError(f"{printable(str(path))} cannot be written: {why.strerror or why}") from None
     finally:
-        if beside:
+        if beside is not None:
             with contextlib.suppress(OSError):
-                os.unlink(beside)
+                beside.unlink(missing_ok=True)
 
 
 def _umask() -> int:

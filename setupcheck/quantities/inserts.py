@@ -380,7 +380,9 @@ INSERTS = (
         "height from which the flank works",
     ),
     _row("works_to", "mm", 3, works_to, {**_MADE, **_PROFILE}, "height up to which one hollow is told"),
-    _row("found_hollow", "", 0, found_hollow, _of("profile", "works_from", "works_to"), "smallest hollow and its place"),
+    _row(
+        "found_hollow", "", 0, found_hollow, _of("profile", "works_from", "works_to"), "smallest hollow and its place"
+    ),
     _row("hollow", "mm", 2, hollow, {"found": "insert.found_hollow"}, "smallest hollow of the flank where it works"),
     _row("sizes", "", 0, sizes, {**_PROFILE, **_CUT}, "heights and full widths"),
     _row("drawn", "", 0, drawn, _PROFILE, "profile for a drawing"),

@@ -1,4 +1,4 @@
-"""The insert of a worm wheel's cutter: its sizes, what to know for grinding it, the readings, and its drawing."""
+"""The insert of a worm wheel's cutter: its sizes, what to know for grinding it, the readings of the grinder."""
 
 from __future__ import annotations
 
@@ -10,13 +10,9 @@ from setupcheck.jobfile.grinding import Grinding
 from setupcheck.notation import show
 from setupcheck.quantities.book import Known, Open, Scope
 from setupcheck.quantities.drive import WheelCut
-from setupcheck.quantities.inserts import Drawn, decimals
-from setupcheck.report.drawings import InsertDrawing, draw_insert
+from setupcheck.quantities.inserts import decimals
 from setupcheck.report.joint import in_words
 from setupcheck.report.wording import clean, wrap
-
-PAPERS = {"A4": (210.0, 297.0), "A3": (297.0, 420.0)}
-"""Width and height of a sheet [mm]. Source: ISO 216."""
 
 SHAPE: tuple[tuple[str, ...], ...] = (
     (
@@ -65,7 +61,7 @@ def inserts(found: Review) -> Iterator[str]:
     """One block for each insert: full widths over the height above its tip, then what to know for grinding it."""
     for number, (scope, cut) in enumerate(drawn_inserts(found)):
         yield from [""] * (number > 0)
-        yield from wrap(f"INSERT, cutter {_name(cut)}: {_kind(found, scope, cut)}", rest="  ")
+        yield from wrap(f"INSERT, cutter {cutter_name(cut)}: {_kind(found, scope, cut)}", rest="  ")
         yield "  height above tip    full width"
         for height, width in _sizes(found, scope):
             yield f"{_length(found, height, 3):>18}{_length(found, width, 4):>14}"
@@ -81,9 +77,8 @@ def readings(found: Review) -> Iterator[str]:
         listed = found.book.get("insert.listed", scope)
         if isinstance(listed, Open):
             why = listed.because or f"fill {', '.join(listed.missing)}"
-            yield from wrap(f"READINGS, cutter {_name(cut)}: cannot tell, {why}", rest="  ")
-        for line in _readings(found, scope, cut):
-            yield line
+            yield from wrap(f"READINGS, cutter {cutter_name(cut)}: cannot tell, {why}", rest="  ")
+        yield from _readings(found, scope, cut)
 
 
 def _readings(found: Review, scope: Scope, cut: WheelCut) -> Iterator[str]:
@@ -92,8 +87,8 @@ def _readings(found: Review, scope: Scope, cut: WheelCut) -> Iterator[str]:
         return
     digits = _digits(found, cut.cutter.grinding)
     yield from wrap(
-        f"READINGS, cutter {_name(cut)}: both flanks alike; across is 0 on the side of the shank and falls towards its middle, "
-        "along is 0 on the tip from outside and grows towards the shank",
+        f"READINGS, cutter {cutter_name(cut)}: both flanks alike; across is 0 on the side of the shank and falls towards its "
+        "middle, along is 0 on the tip from outside and grows towards the shank",
         rest="  ",
     )
     yield "  point  height above tip        across         along"
@@ -107,7 +102,7 @@ def inserts_as_data(found: Review) -> list[dict[str, object]]:
     return [
         {
             "op": scope.op,
-            "cutter": clean(_name(cut)),
+            "cutter": clean(cutter_name(cut)),
             "sizes": [{"height": _plain(h), "width": _plain(w)} for h, w in _sizes(found, scope)],
             "points": [
                 {"height": _plain(h), "across": _plain(x), "along": _plain(y)} for h, x, y in _listed(found, scope)
@@ -116,26 +111,6 @@ def inserts_as_data(found: Review) -> list[dict[str, object]]:
         }
         for scope, cut in drawn_inserts(found)
     ]
-
-
-def as_drawing(found: Review, *, scale: float, paper: str) -> str:
-    """The drawing of the job's insert as SVG, true to scale on a sheet, upright or turned.
-
-    Raises: SetupcheckError where the job gives no insert, or none that goes on the paper at that scale.
-    """
-    scope, cut = the_insert(found)
-    width, height = PAPERS[paper]
-    try:
-        drawing = _drawing(found, scope, cut, scale)
-        try:
-            return draw_insert(drawing, paper=(width, height))
-        except ValueError as upright:
-            try:
-                return draw_insert(drawing, paper=(height, width))
-            except ValueError:
-                raise upright from None
-    except ValueError as why:
-        raise SetupcheckError(f"{found.loaded.file}: no drawing of cutter {_name(cut)}: {why}") from None
 
 
 def the_insert(found: Review) -> tuple[Scope, WheelCut]:
@@ -160,34 +135,12 @@ def the_insert(found: Review) -> tuple[Scope, WheelCut]:
     raise SetupcheckError(f"{file}: no single-point cutter makes the teeth of {job.mesh.wheel}, so there is no insert")
 
 
-def _drawing(found: Review, scope: Scope, cut: WheelCut, scale: float) -> InsertDrawing:
-    drawn, width, angle = (_known(found, f"insert.{n}", scope) for n in ("drawn", "pitch_width", "angle"))
-    assert isinstance(drawn, Drawn) and isinstance(width, float) and isinstance(angle, float)
-    job = found.loaded.job
-    return InsertDrawing(
-        title=f"{clean(job.job)} " * bool(job.job) + f"insert of {clean(_name(cut))}",
-        scale=scale,
-        heights=drawn.heights,
-        right=drawn.half_widths,
-        left=drawn.half_widths,
-        pitch_height=cut.pitch_height,
-        pitch_width=width,
-        right_angle=0.5 * angle,
-        left_angle=0.5 * angle,
-    )
-
-
-def _known(found: Review, name: str, scope: Scope) -> object:
-    answer = found.book.get(name, scope)
-    if isinstance(answer, Known):
-        return answer.value
-    raise ValueError(answer.because if isinstance(answer, Open) and answer.because else f"{name} is not known")
-
-
 def _kind(found: Review, scope: Scope, cut: WheelCut) -> str:
     """`op 50, envelope of the gap, ground to its stated width`."""
     kind = "envelope of the gap" if cut.cutter.insert == "envelope" else "copied from the mid-plane of the gap"
-    width = "at its stated width" if cut.cutter.width is not None else "for the thread without backlash (no width stated)"
+    width = (
+        "at its stated width" if cut.cutter.width is not None else "for the thread without backlash (no width stated)"
+    )
     return f"op {scope.op}, {kind}, {width}; both flanks alike"
 
 
@@ -201,7 +154,8 @@ def _listed(found: Review, scope: Scope) -> tuple[tuple[float, float, float], ..
     return answer.value if isinstance(answer, Known) else ()  # type: ignore[return-value]
 
 
-def _name(cut: WheelCut) -> str:
+def cutter_name(cut: WheelCut) -> str:
+    """Name of the cutter in the job file."""
     return cut.cutter_path.removeprefix("cutters.")
 
 

@@ -44,7 +44,8 @@ def as_data(found: Review) -> dict[str, object]:
     from setupcheck import __version__
 
     job, house = found.loaded.job, found.house
-    lines, ground = worked_out(found), inserts_as_data(found)  # these four before the quantities, which list what was looked at
+    lines = worked_out(found)  # these four before the quantities, which list what was looked at
+    ground = inserts_as_data(found)
     joints, heating = joints_as_data(found), heating_plans_as_data(found)
     return {
         "format": FORMAT,

@@ -135,9 +135,7 @@ def widened(gap: Sections, by: float) -> Sections:
     if not math.isfinite(by):
         raise ValueError("a gap is widened by a number, 0 where it fits the thread")
     turn = 0.5 * by / gap.pair.rolling
-    return replace(
-        gap, angle=gap.angle + turn, edge_angle=gap.edge_angle + turn, middle_angle=gap.middle_angle + turn
-    )
+    return replace(gap, angle=gap.angle + turn, edge_angle=gap.edge_angle + turn, middle_angle=gap.middle_angle + turn)
 
 
 def end_takes_over(gap: Sections, cut: Cut) -> float:
