@@ -1,7 +1,7 @@
 """The job models: parts, machines, cutters, place, requirements. Sizes mm, angles rad, degC, N, s.
 
-Models that describe a setup stand in `setups.py`, the heat of a joint in `heating.py`, worm and mesh in `worm.py`. All are
-frozen and refuse unknown keys.
+Models that describe a setup stand in `setups.py`, the heat of a joint in `heating.py`, worm and mesh in `worm.py`, how an insert
+is ground in `grinding.py`. All are frozen and refuse unknown keys.
 """
 
 # Annotations are evaluated as they stand (no __future__ import): pydantic would have to compile each of them from its text.
@@ -16,6 +16,7 @@ from pydantic import (
 )
 
 from setupcheck import notation
+from setupcheck.jobfile.grinding import Grinding
 from setupcheck.jobfile.properties import Properties
 from setupcheck.jobfile.types import (
     Angle,
@@ -284,6 +285,7 @@ class Cutter(Shop):
     insert: Literal["envelope", "mid-plane"] | None = None
     width: Dim | None = None
     width_at: Size | None = None
+    grinding: Grinding | None = None
     diameter: Size | None = None
     speed: Speed | None = None
 

@@ -15,6 +15,7 @@ from setupcheck.quantities.exact_gap import EXACT
 from setupcheck.quantities.growing import GROWING
 from setupcheck.quantities.head_setting import HEAD
 from setupcheck.quantities.heat_checks import HEAT_CHECKS
+from setupcheck.quantities.inserts import INSERTS
 from setupcheck.quantities.joining import JOINING
 from setupcheck.quantities.joint_heat import HEAT
 from setupcheck.quantities.joint_states import IN_STATES
@@ -276,6 +277,7 @@ TABLES: tuple[Quantity, ...] = (
     *CUTTING,
     *SHAPE,
     *EXACT,
+    *INSERTS,
     *MESHING,
     *WORM,
     *THREAD,

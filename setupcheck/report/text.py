@@ -12,6 +12,7 @@ from setupcheck.quantities.gates import Gate
 from setupcheck.quantities.judged import Result
 from setupcheck.report.causes import cause_in_words
 from setupcheck.report.heating_plan import heating_plans
+from setupcheck.report.insert import inserts
 from setupcheck.report.joint import joints
 from setupcheck.report.remedies import remedy_in_words
 from setupcheck.report.uncomputed import in_lines, uncomputed
@@ -39,6 +40,7 @@ def as_text(found: Review, *, everything: bool = False) -> str:
         _requirements(found, everything),
         joints(found),
         heating_plans(found),
+        inserts(found),
         _worked_out(found),
         _uncomputed(found),
         _gates(found),

@@ -37,6 +37,7 @@ NOT_LOOKED_AT: Mapping[str, Mapping[str, str]] = {
         "insert": "insert {said}",
         "width": "width of the insert {said}",
         "width_at": "height {said} of that width",
+        "grinding": "grinding of the insert, {said} (looked at only with `contact: exact` under mesh)",
         "diameter": "diameter {said}",
         "speed": "speed {said}",
     },
@@ -161,6 +162,8 @@ def _of_the_wheel(loaded: LoadedJob) -> Iterator[str]:
             path = f"setups.{setup.op}.cut.{name}"
             yield from (f"{path}.depth", f"{path}.depth_from", "worm.profile", "worm.thread_thickness")
             yield from (f"cutters.{cut.cutter}.tip_radius", f"cutters.{cut.cutter}.insert")
+            if job.mesh.contact is not None:
+                yield from (f"cutters.{cut.cutter}.{key}" for key in ("grinding", "width", "width_at"))
             if cut.depth_from is not None:
                 touched = loaded.ref(cut.depth_from.surface, wheel.part)
                 yield f"parts.{touched.part}.surfaces.{touched.surface}.radius"

@@ -6,6 +6,9 @@ of centres. The sections of the gap do not depend on the cutter: compute them on
 
 from __future__ import annotations
 
+import math
+from dataclasses import replace
+
 import numpy as np
 
 from setupcheck.record import record
@@ -111,10 +114,7 @@ def envelope_insert(gap: Sections, cut: Cut) -> Insert:
     rc, v = on_cutter(gap.pair, made, gap.r, gap.angle, gap.z)
     heights = _heights(gap, made, rc)
     at = made.radius - heights
-    widths = np.empty((len(gap.z), len(heights)))
-    for i in range(len(gap.z)):
-        widths[i] = curve(rc[::-1, i], v[::-1, i]).at(at)[0]
-        widths[i][at < rc[-1, i]] = NOTHING  # above the tooth's tip
+    widths = _in_planes(gap, rc, v, at)
     touched = np.where(at <= rc[0][:, np.newaxis], widths, NOTHING).max(axis=0)
     peak = np.maximum(_peak(widths), _edge(gap, made, at))
     shrinks = np.flatnonzero(np.diff(peak) < 0.0)  # above the corner that stands out farthest; an insert cannot shrink
@@ -125,6 +125,45 @@ def envelope_insert(gap: Sections, cut: Cut) -> Insert:
     start = float(middle.x[-1])  # where contact begins in the mid-plane
     below = middle.at(at)[0] + float(whole.at(np.array(start))[0] - middle.y[-1])
     return _insert(heights, np.where(at <= start, peak, np.maximum(below, touched)))
+
+
+def widened(gap: Sections, by: float) -> Sections:
+    """The sections of a gap that is wider by so much along the rolling circle [mm], for backlash; both flanks turn alike.
+
+    Raises: ValueError for a width that is no number.  Source: a flank turned about the wheel's axis stays conjugate.
+    """
+    if not math.isfinite(by):
+        raise ValueError("a gap is widened by a number, 0 where it fits the thread")
+    turn = 0.5 * by / gap.pair.rolling
+    return replace(gap, angle=gap.angle + turn, edge_angle=gap.edge_angle + turn, middle_angle=gap.middle_angle + turn)
+
+
+def end_takes_over(gap: Sections, cut: Cut) -> float:
+    """Height above the tip up to which an envelope is made by the ridge inside the face [mm].
+
+    Above it an end of the face or the edge of the tooth's tip stands out farthest, and the profile has a bend there that no
+    radius describes. The whole height of the profile where neither ever does; where contact begins, if one does from there.
+    Raises: ValueError for a cutter smaller than the worm.  Source: which section is the widest, height by height.
+    """
+    made = _made_for(gap.pair, cut)
+    rc, v = on_cutter(gap.pair, made, gap.r, gap.angle, gap.z)
+    heights = _heights(gap, made, rc)
+    at = made.radius - heights
+    widths = _in_planes(gap, rc, v, at)
+    widest = np.argmax(widths, axis=0)
+    outermost = (widest == 0) | (widest == len(gap.z) - 1) | (_edge(gap, made, at) > widths.max(axis=0))
+    start = made.radius - float(_middle(gap, made).x[-1])
+    over = np.flatnonzero(outermost & (heights > start))
+    return float(heights[-1]) if len(over) == 0 else max(start, float(heights[over[0] - 1]))
+
+
+def _in_planes(gap: Sections, rc: Array, v: Array, at: Array) -> Array:
+    """Width of each plane's section at cutter radii `at`, (planes, n); NOTHING above the tooth's tip."""
+    widths = np.empty((len(gap.z), len(at)))
+    for i in range(len(gap.z)):
+        widths[i] = curve(rc[::-1, i], v[::-1, i]).at(at)[0]
+        widths[i][at < rc[-1, i]] = NOTHING
+    return widths
 
 
 def _middle(gap: Sections, cut: Cut) -> Curve:

@@ -8,7 +8,7 @@ import json
 import pytest
 from pydantic import BaseModel
 
-from setupcheck.jobfile import heating, models, properties, setups, worm
+from setupcheck.jobfile import grinding, heating, models, properties, setups, worm
 from setupcheck.report.json import as_json
 from setupcheck.report.text import as_text
 from setupcheck.report.uncomputed import NOT_LOOKED_AT, in_lines, uncomputed
@@ -32,6 +32,7 @@ READ = {
     "OverWires": "nominal lower upper fit measured uncertainty at_temperature wire",
     "Mesh": "wheel centre_distance shift ball contact",
     "Cutter": "kind bar_diameter overhang",
+    "Grinding": "wheel_radius step form_error stop_error way shank_side touched_at",
     "Machine": "kind worm_ratio axis_runout hole_circles",
     "Distance": "from_ length",
     "Place": "axis worm_axis",
@@ -66,7 +67,7 @@ READ = {
 
 RECORDS = {
     record.__name__: record  # not the name it is found under: some have a second one
-    for module in (models, properties, setups, heating, worm)
+    for module in (grinding, models, properties, setups, heating, worm)
     for record in vars(module).values()
     if inspect.isclass(record)
     and issubclass(record, BaseModel)
