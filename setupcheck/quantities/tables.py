@@ -8,6 +8,8 @@ from setupcheck.quantities.book import Quantity
 from setupcheck.quantities.chilling import CHILLING
 from setupcheck.quantities.choosing import CHOOSING
 from setupcheck.quantities.clamping import CLAMP
+from setupcheck.quantities.contact import CONTACT
+from setupcheck.quantities.contact_advice import CONTACT_ADVICE
 from setupcheck.quantities.cutter_shape import SHAPE
 from setupcheck.quantities.cutting import CUTTING
 from setupcheck.quantities.division import DIVIDE
@@ -276,6 +278,8 @@ TABLES: tuple[Quantity, ...] = (
     *CUTTING,
     *SHAPE,
     *EXACT,
+    *CONTACT,
+    *CONTACT_ADVICE,
     *MESHING,
     *WORM,
     *THREAD,
