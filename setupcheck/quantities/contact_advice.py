@@ -187,5 +187,12 @@ CONTACT_ADVICE: tuple[Quantity, ...] = (
         {**_TOLD, "allowed": "contact.mid_plane", "worst": "contact.mid_plane_error"},
         "what brings the mid-plane into its tolerance",
     ),
-    row("advice_depth", "", 0, for_depth, {**_FLOOR, "allowed": "contact.depth"}, "what brings the depth into its tolerance"),
+    row(
+        "advice_depth",
+        "",
+        0,
+        for_depth,
+        {**_FLOOR, "allowed": "contact.depth"},
+        "what brings the depth into its tolerance",
+    ),
 )

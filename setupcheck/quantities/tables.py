@@ -10,6 +10,7 @@ from setupcheck.quantities.choosing import CHOOSING
 from setupcheck.quantities.clamping import CLAMP
 from setupcheck.quantities.contact import CONTACT
 from setupcheck.quantities.contact_advice import CONTACT_ADVICE
+from setupcheck.quantities.contact_setting import CONTACT_SETTING
 from setupcheck.quantities.cutter_shape import SHAPE
 from setupcheck.quantities.cutting import CUTTING
 from setupcheck.quantities.division import DIVIDE
@@ -279,6 +280,7 @@ TABLES: tuple[Quantity, ...] = (
     *SHAPE,
     *EXACT,
     *CONTACT,
+    *CONTACT_SETTING,
     *CONTACT_ADVICE,
     *MESHING,
     *WORM,

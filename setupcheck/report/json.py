@@ -10,6 +10,7 @@ from setupcheck.notation import FACTOR
 from setupcheck.quantities.book import INCH, Known, Scope
 from setupcheck.quantities.judged import Result
 from setupcheck.quantities.scopes import stack_of
+from setupcheck.report.contact import contacts_as_data
 from setupcheck.report.heating_plan import heating_plans_as_data
 from setupcheck.report.joint import joints_as_data
 from setupcheck.report.remedies import remedy_in_words
@@ -43,8 +44,9 @@ def as_data(found: Review) -> dict[str, object]:
     from setupcheck import __version__
 
     job, house = found.loaded.job, found.house
-    lines = worked_out(found)  # these three before the quantities, which list what was looked at
+    lines = worked_out(found)  # these four before the quantities, which list what was looked at
     joints, heating = joints_as_data(found), heating_plans_as_data(found)
+    contact = contacts_as_data(found)
     return {
         "format": FORMAT,
         "setupcheck": __version__,
@@ -74,6 +76,7 @@ def as_data(found: Review) -> dict[str, object]:
         ],
         "joints": joints,
         "heating_plans": heating,
+        "contacts": contact,
         "worked_out": lines,
         "findings": [_finding(found, f) for f in found.evaluation.findings],
         "cautions": [

@@ -164,8 +164,9 @@ def best_cutter(
     radius = _smallest_clear(bench, curve, step)
     if radius is None:
         return Recommendation(floor, None, None, curve, None, None, None, None)
-    none: dict[str, Tolerance | None] = dict.fromkeys(STEPS)
-    limits = none if budget is None else none | tolerances(bench, radius, budget=budget)
+    limits: dict[str, Tolerance | None] = dict.fromkeys(STEPS)
+    if budget is not None:
+        limits.update(tolerances(bench, radius, budget=budget))
     return Recommendation(floor, radius, candidate(bench, radius), curve, **limits)
 
 
@@ -203,9 +204,7 @@ def _smallest_clear(bench: Workbench, curve: tuple[Candidate, ...], step: float)
     return high * step
 
 
-def tolerances(
-    bench: Workbench, radius: float, *, budget: float, insert: Insert | None = None
-) -> dict[str, Tolerance]:
+def tolerances(bench: Workbench, radius: float, *, budget: float, insert: Insert | None = None) -> dict[str, Tolerance]:
     """What tilt, offset, clearance and turn of the insert may be off, each alone [rad, mm].
 
     budget  transmission error, along the rolling circle, end to end [mm];  insert  None: the envelope for that radius
