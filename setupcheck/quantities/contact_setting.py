@@ -14,7 +14,7 @@ from setupcheck.ledger.figures import MidPlane
 from setupcheck.ledger.route import State
 from setupcheck.quantities.backlash import depth_of_cut
 from setupcheck.quantities.book import Open, Quantity
-from setupcheck.quantities.contact import ASKED, BEST, CUT, FLOOR, KEPT, MADE, SET, Drill, bench_of, insert_of, run
+from setupcheck.quantities.contact import ASKED, BEST, CUT, FLOOR, KEPT, MADE, SET, Drill, bench_of, insert_of
 from setupcheck.quantities.drive import WheelCut
 from setupcheck.quantities.exact_gap import in_range, row
 from setupcheck.quantities.shop import Floor
@@ -42,16 +42,14 @@ def budget(asked: str, floor: Floor) -> float | Open:
 
 @in_range
 def tolerances(
-    drill: Drill, made_for: Cut, kind: str, budget: float, best: Recommendation
+    drill: Drill, made_for: Cut, kind: str, budget: float, best: Recommendation, error: float
 ) -> dict[str, Tolerance] | None:
     """What tilt, mid-plane, depth and turn of the insert may each be off alone, everything else as made for.
 
-    None below zero crowning, which CUTTER-003 judges, and where the error exceeds the budget with nothing off at all, which
-    CUTTER-012 judges.  Source: worm.best_cutter.
+    None below zero crowning, which CUTTER-003 judges, and where the error exceeds the budget as planned, which CUTTER-012
+    judges.  Source: worm.best_cutter.
     """
-    if made_for.radius < best.floor:
-        return None
-    if run(drill, made_for.radius, kind, made_for, 1).transmission_error > budget:
+    if made_for.radius < best.floor or error > budget:
         return None
     return _tolerances(drill, made_for.radius, kind, budget)
 
@@ -186,7 +184,7 @@ CONTACT_SETTING: tuple[Quantity, ...] = (
         "",
         0,
         tolerances,
-        {**MADE, "kind": "cutter.insert", "budget": "contact.budget", **BEST},
+        {**MADE, "kind": "cutter.insert", "budget": "contact.budget", **BEST, "error": "contact.error"},
         "what the setting may be off at the planned radius",
     ),
     row("tilt", "arcmin", 1, tilt, _FOUND, "what the tilt may be off, whichever way"),

@@ -100,7 +100,8 @@ def _asked(found: Review) -> Iterator[tuple[Scope, WheelCut, Maps]]:
 def picture(marked: np.ndarray) -> list[str]:
     """The marking of one flank from tip to root, from the -z end of the face to the +z end; # where half or more is marked.
 
-    marked  share of every point's cell that is marked, (rows, columns), root first.  Source: worm.meshing, on a grid as fine along the face and three times finer up the flank.
+    marked  share of every point's cell that is marked, (rows, columns), root first.
+    Source: worm.meshing, on a grid twice as fine along the face and three times finer up the flank.
     """
     rows, columns = marked.shape
     up = [round((rows - 1) * (ROWS - 1 - i) / (ROWS - 1)) for i in range(ROWS)]
