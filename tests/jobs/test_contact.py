@@ -140,9 +140,12 @@ def test_every_slip_is_made_in_two_routes_or_more() -> None:
     assert all(len({s.job for s in slips}) == len(slips) >= 2 for slips in SLIPS.values())
 
 
-def test_a_slip_of_the_insert_is_not_told_by_the_tolerances_too() -> None:
-    """Where nothing off is too much already, what may be off says nothing new."""
-    assert spoken(judged(changed("spindle", ("insert: envelope", "insert: mid-plane")))) == {"CUTTER-012": "fail"}
+@pytest.mark.parametrize(
+    "change", [("insert: envelope", "insert: mid-plane"), ("tilt: 3deg 10' 47\"", "tilt: 2.85 deg")]
+)
+def test_what_fails_as_planned_is_not_told_by_the_tolerances_too(change: tuple[str, str]) -> None:
+    """Where the plan is too much already, what may be off beside it says nothing new."""
+    assert spoken(judged(changed("spindle", change))) == {"CUTTER-012": "fail"}
 
 
 def test_below_zero_crowning_only_the_ends_are_told_beside_the_radius() -> None:
@@ -259,6 +262,34 @@ def test_a_job_that_does_not_ask_has_no_block_no_finding_and_loads_nothing_for_i
     assert not {"setupcheck.worm.meshing", "setupcheck.worm.best_cutter", "setupcheck.worm.conjugate"} & set(
         run.stdout.splitlines()
     )
+
+
+def test_a_budget_that_nothing_is_held_against_is_told() -> None:
+    from setupcheck.report.uncomputed import in_lines, uncomputed
+
+    def told(*pairs: tuple[str, str]) -> str:
+        return " ".join(in_lines(uncomputed(read_job_text(changed("ninety", *pairs), "job.yaml"))))
+
+    assert "budget" not in told()
+    assert "error budget 5 um (held against `contact: exact` only)" in told((" contact: exact,", ""))
+    hobbed = told(("fly: {kind: single-point", "fly: {kind: hob"))
+    assert "contact exact (of a wheel cut by a single point only)" in hobbed and "error budget 5 um" in hobbed
+
+
+def test_an_inch_file_is_told_and_advised_in_inches() -> None:
+    """The same sizes in inches; a recommended radius is a multiple of 20 thou."""
+    inch = worm_job(starts=1, hand="right", module=0.06, worm=0.88, teeth=90, face=0.44, radius=0.6, budget="0.2 thou")
+    for old, new in (("units: mm", "units: in"), (" mm, uncertainty: 1 um", " in, uncertainty: 0.04 thou")):
+        inch = inch.replace(old, new)
+    for low, high in ((" ±0.010}", " ±0.0004}"), (" ±0.01,", " ±0.0004,"), ("from: -40,", "from: -1.6,")):
+        inch = inch.replace(low, high)
+    inch = inch.replace("at: -35", "at: -1.4").replace("at: -5,", "at: -0.2,")
+    inch = inch.replace("to: 20.44", "to: 1.24").replace("to: 22.44", "to: 1.3")
+    found = judged(inch)
+    told = {f.rule: f.remedy for f in found.evaluation.findings if f.rule in NEW and f.verdict != "pass"}
+    assert "Set the tip radius to 0.700 in (cutters.fly.tip_radius)" in told["CUTTER-013"]
+    block = as_text(found).partition("CONTACT, op ")[2].partition("\n\n")[0]
+    assert " mm" not in block and " um" not in block
 
 
 @pytest.mark.parametrize(
