@@ -23,6 +23,7 @@ from setupcheck.jobfile.types import (
     Whole,
     in_file_units,
     scalar,
+    units_of,
 )
 
 
@@ -71,6 +72,17 @@ Travel = Annotated[Dimension, AfterValidator(_above_zero)]
 """An axial pitch or a lead [mm], drawn or measured."""
 
 
+def _budget(given: object, info: ValidationInfo) -> float:
+    value = notation.bound(scalar(given), units=units_of(info), unit_needed=True)
+    if value == 0.0:
+        raise ValueError("no cut wheel runs without error. Write a budget above zero, as in error_budget: 10 um")
+    return value
+
+
+Budget = Annotated[float, Read(_budget)]
+"""An error that is allowed [mm], above zero; the unit must be written."""
+
+
 class Worm(Shop):
     """The worm. `pressure_angle` is that of its axial section; `lead` is its travel in one turn.
 
@@ -103,6 +115,7 @@ class Mesh(Shop):
 
     ball     diameter of the balls that the finished wheel is measured over [mm]
     contact  `exact`: contact, transmission error and insert from the exact gap, which takes a second more
+    error_budget  transmission error that the cut may leave, along the reference circle, end to end over one pitch [mm]
     """
 
     wheel: str
@@ -113,3 +126,4 @@ class Mesh(Shop):
     serves_at: Service | None = None
     ball: Size | None = None
     contact: Literal["exact"] | None = None
+    error_budget: Budget | None = None

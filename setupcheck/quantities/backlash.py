@@ -70,7 +70,7 @@ def backlash(floor: Floor, stack: Stack) -> Built | Open:
     factor = along_of(floor, stack, found)
     g, r = both
     served = _served(floor, found)
-    gap, depth = _gap(floor, made), _depth(floor, made, g)
+    gap, depth = _gap(floor, made), depth_of_cut(floor, made, g)
     mesh, grown = _mesh(floor, found), _growth(floor, found)
     opened = [x for x in (gap, depth, mesh, grown, served) if isinstance(x, Open)]
     if opened:
@@ -141,7 +141,7 @@ def _gap(floor: Floor, cut: WheelCut) -> Account | Open:
         return Open(because=str(why))
 
 
-def _depth(floor: Floor, cut: WheelCut, teeth: State) -> Account | Open:
+def depth_of_cut(floor: Floor, cut: WheelCut, teeth: State) -> Account | Open:
     """How much deeper than planned the insert goes, on the radius [mm]: feed, size touched, and where round it was touched.
 
     The touched surface runs out to the axis that the wheel turns about while it is cut, and it is touched at one place.

@@ -5,6 +5,7 @@ from __future__ import annotations
 import math
 from collections.abc import Callable
 
+from setupcheck.jobfile.models import Distance
 from setupcheck.ledger import figures, route, teeth
 from setupcheck.ledger.account import Account
 from setupcheck.ledger.figures import Figure
@@ -212,8 +213,17 @@ def _mid_plane(floor: Floor, stack: Stack) -> Built | Open:
             f"{face.ref} and {g.ref} are never joined in this route",
             "Write the joining as a setup of its own",
         )
+    return mid_plane(place.worm_axis, g, r, face)
+
+
+def mid_plane(worm_axis: Distance, g: State, r: State, face: State) -> Built:
+    """The figure of a mid-plane: teeth g about the axis r, the worm's axis at a distance from a face, all of one body.
+
+    Source: geometry, as in ledger.figures.
+    """
+    assert g.pattern is not None
     middle, error = size_error(
-        place.worm_axis.length, Entry("housing, face to worm axis", None, "place.worm_axis.length", "")
+        worm_axis.length, Entry("housing, face to worm axis", None, "place.worm_axis.length", "")
     )
     sign = float(face.facing)
     axial = g.axial - face.axial - error * sign

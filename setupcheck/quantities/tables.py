@@ -8,6 +8,9 @@ from setupcheck.quantities.book import Quantity
 from setupcheck.quantities.chilling import CHILLING
 from setupcheck.quantities.choosing import CHOOSING
 from setupcheck.quantities.clamping import CLAMP
+from setupcheck.quantities.contact import CONTACT
+from setupcheck.quantities.contact_advice import CONTACT_ADVICE
+from setupcheck.quantities.contact_setting import CONTACT_SETTING
 from setupcheck.quantities.cutter_shape import SHAPE
 from setupcheck.quantities.cutting import CUTTING
 from setupcheck.quantities.division import DIVIDE
@@ -277,6 +280,9 @@ TABLES: tuple[Quantity, ...] = (
     *CUTTING,
     *SHAPE,
     *EXACT,
+    *CONTACT,
+    *CONTACT_SETTING,
+    *CONTACT_ADVICE,
     *INSERTS,
     *MESHING,
     *WORM,

@@ -10,6 +10,7 @@ from setupcheck.notation import FACTOR
 from setupcheck.quantities.book import INCH, Known, Scope
 from setupcheck.quantities.judged import Result
 from setupcheck.quantities.scopes import stack_of
+from setupcheck.report.contact import contacts_as_data
 from setupcheck.report.heating_plan import heating_plans_as_data
 from setupcheck.report.insert import inserts_as_data
 from setupcheck.report.joint import joints_as_data
@@ -47,6 +48,7 @@ def as_data(found: Review) -> dict[str, object]:
     lines = worked_out(found)  # these four before the quantities, which list what was looked at
     ground = inserts_as_data(found)
     joints, heating = joints_as_data(found), heating_plans_as_data(found)
+    contact = contacts_as_data(found)
     return {
         "format": FORMAT,
         "setupcheck": __version__,
@@ -76,6 +78,7 @@ def as_data(found: Review) -> dict[str, object]:
         ],
         "joints": joints,
         "heating_plans": heating,
+        "contacts": contact,
         "inserts": ground,
         "worked_out": lines,
         "findings": [_finding(found, f) for f in found.evaluation.findings],

@@ -11,6 +11,7 @@ from setupcheck.quantities.book import Open, Scope
 from setupcheck.quantities.gates import Gate
 from setupcheck.quantities.judged import Result
 from setupcheck.report.causes import cause_in_words
+from setupcheck.report.contact import contacts
 from setupcheck.report.heating_plan import heating_plans
 from setupcheck.report.insert import inserts
 from setupcheck.report.joint import joints
@@ -40,6 +41,7 @@ def as_text(found: Review, *, everything: bool = False) -> str:
         _requirements(found, everything),
         joints(found),
         heating_plans(found),
+        contacts(found),
         inserts(found),
         _worked_out(found),
         _uncomputed(found),

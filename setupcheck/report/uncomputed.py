@@ -31,6 +31,8 @@ NOT_LOOKED_AT: Mapping[str, Mapping[str, str]] = {
         "shaft_angle_error": "error of the shaft angle {said}",
         "housing": "housing of {said}",
         "serves_at": "serves from {said}",
+        "contact": "contact {said} (of a wheel cut by a single point only)",
+        "error_budget": "error budget {said} (held against `contact: exact` only)",
     },
     "Cutter": {
         "tip_radius": "tip radius {said}",
@@ -167,6 +169,8 @@ def _of_the_wheel(loaded: LoadedJob) -> Iterator[str]:
             if cut.depth_from is not None:
                 touched = loaded.ref(cut.depth_from.surface, wheel.part)
                 yield f"parts.{touched.part}.surfaces.{touched.surface}.radius"
+            if job.mesh.contact is not None:
+                yield from ("mesh.contact", "mesh.error_budget", f"{path}.depth_error")
             if asked:
                 yield from (f"{path}.depth_error", f"cutters.{cut.cutter}.width", f"cutters.{cut.cutter}.width_at")
                 yield from ("worm.material", "mesh.housing", "mesh.serves_at", f"parts.{wheel.part}.properties")

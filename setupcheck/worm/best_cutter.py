@@ -134,7 +134,7 @@ def best_cutter(
     *,
     clearance: float,
     film: float,
-    budget: float,
+    budget: float | None,
     step: float = 0.5,
     tilt: float | None = None,
     curve_points: int = 12,
@@ -142,14 +142,15 @@ def best_cutter(
     """Cutter radius for a pair, with its curve and the tolerances of its setting.
 
     clearance  of the cutter's tip below the worm's tip [mm];  film  of marking blue [mm];  step  to round the radius up to [mm]
-    budget     transmission error that an error of setting may cause, along the rolling circle, end to end [mm]
+    budget     transmission error that an error of setting may cause, along the rolling circle, end to end [mm]; None: no
+               tolerances are looked for
     tilt       None: the lead angle at the pitch point [rad]
     Default is the smallest radius that keeps the ends of the face clear; rounded up, never down, as a cutter too small rides
     on the ends and one too large only marks less.
     Raises: ValueError for sizes not above zero, or a pair, blank and clearance that do not go together.
     Source: exact map at every radius and for every error of setting tried. Derived here; no outside source.
     """
-    above_zero(budget=budget, radius_step=step)
+    above_zero(radius_step=step, **({} if budget is None else {"budget": budget}))
     if curve_points < 2:
         raise ValueError("a curve of radii wants two points or more")
     bench = workbench(pair, blank, clearance=clearance, film=film, tilt=tilt)
@@ -163,7 +164,9 @@ def best_cutter(
     radius = _smallest_clear(bench, curve, step)
     if radius is None:
         return Recommendation(floor, None, None, curve, None, None, None, None)
-    limits = tolerances(bench, radius, budget=budget)
+    limits: dict[str, Tolerance | None] = dict.fromkeys(STEPS)
+    if budget is not None:
+        limits.update(tolerances(bench, radius, budget=budget))
     return Recommendation(floor, radius, candidate(bench, radius), curve, **limits)
 
 
@@ -201,17 +204,36 @@ def _smallest_clear(bench: Workbench, curve: tuple[Candidate, ...], step: float)
     return high * step
 
 
-def tolerances(bench: Workbench, radius: float, *, budget: float) -> dict[str, Tolerance]:
-    """What tilt, offset, clearance and turn of the insert may be off with an envelope insert, each alone [rad, mm].
+def tolerances(bench: Workbench, radius: float, *, budget: float, insert: Insert | None = None) -> dict[str, Tolerance]:
+    """What tilt, offset, clearance and turn of the insert may be off, each alone [rad, mm].
 
-    budget  transmission error, along the rolling circle, end to end [mm]
+    budget  transmission error, along the rolling circle, end to end [mm];  insert  None: the envelope for that radius
     Every error tried is cut and run anew; a setting that cannot be cut at all counts as beyond the budget.
     Raises: ValueError for a cutter smaller than the worm.  Source: derived here.
     """
     above_zero(budget=budget)
     cut = bench.cut(radius)
-    insert = envelope_insert(bench.gap, cut)
-    return {name: _tolerance(bench, insert, cut, name, budget) for name in STEPS}
+    made = insert if insert is not None else envelope_insert(bench.gap, cut)
+    return {name: _tolerance(bench, made, cut, name, budget) for name in STEPS}
+
+
+def radius_that_forgives(
+    bench: Workbench, name: str, needed: float, *, budget: float, radius: float, step: float
+) -> tuple[float, float] | None:
+    """Larger radius at which a setting may be off by `needed`, and what it may be off there; None up to the largest.
+
+    name    tilt, offset, clearance or turned;  needed  [rad, mm];  radius  to begin above, in steps of 4 % and more [mm]
+    Envelope insert made for each radius.  Source: derived here.
+    """
+    above_zero(budget=budget, radius_step=step)
+    last = max(LARGEST * bench.flank.pair.thread.tip, 1.5 * radius)
+    number = math.floor(radius / step + 1e-9)
+    while (number := max(number + 1, math.ceil(1.04 * number))) * step <= last:
+        cut = bench.cut(number * step)
+        found = _tolerance(bench, envelope_insert(bench.gap, cut), cut, name, budget).either
+        if found >= needed:
+            return number * step, min(found, SPANS[name])
+    return None
 
 
 def _tolerance(bench: Workbench, insert: Insert, cut: Cut, name: str, budget: float) -> Tolerance:

@@ -65,6 +65,11 @@ def slips() -> str:
     return "\n".join(told)
 
 
+def first_of(word: str, lines: list[str]) -> int:
+    """The first line that begins with a word."""
+    return next(i for i, line in enumerate(lines) if line.startswith(word))
+
+
 def excerpts() -> dict[str, str]:
     """The excerpts of the README, cut out of the real reports."""
     shimmed = reports()["shimmed-jaws.txt"].splitlines()
@@ -72,14 +77,14 @@ def excerpts() -> dict[str, str]:
     first = next(i for i, line in enumerate(shimmed) if line.startswith("  fail  STACK-001"))
     after = next(i for i in range(first + 1, len(shimmed)) if re.match(r"  \w+  [A-Z]+-\d|$", shimmed[i]))
     good = reports()["rotator-worm-wheel.txt"].splitlines()
+    drawn = reports()["wheel-on-spindle.txt"].splitlines()
     asked = good.index("WHAT WAS ASKED, at its worst")
     dial = next(i for i, line in enumerate(good) if line.startswith("  op 40, run-out on hub: up to"))
     return {
         "shimmed": "\n".join([*head, "", "FINDINGS", *shimmed[first:after], "  …"]),
         "good": "\n".join([*good[:2], "", *good[asked : asked + 9], "  …", "", *good[dial : dial + 4], "  …"]),
-        "joint": "\n".join(
-            good[next(i for i, g in enumerate(good) if g.startswith("JOINT")) : good.index("WORKED OUT") - 1]
-        ),
+        "joint": "\n".join(good[first_of("JOINT", good) : good.index("WORKED OUT") - 1]),
+        "contact": "\n".join(drawn[first_of("CONTACT", drawn) : drawn.index("WORKED OUT") - 1]),
         "worked": "\n".join(good[good.index("WORKED OUT") : good.index("", good.index("WORKED OUT"))]),
         "slips": slips(),
         "mistakes": mistakes(),

@@ -94,6 +94,7 @@ def test_json_has_format_1_and_the_keys_that_were_promised(job: Path) -> None:
         "gates",
         "joints",
         "heating_plans",
+        "contacts",
         "inserts",
         "worked_out",
         "findings",

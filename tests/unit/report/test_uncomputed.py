@@ -30,7 +30,7 @@ READ = {
     "tip_diameter pressure_angle over_wires end_float",
     "Thickness": "nominal lower upper fit measured uncertainty at_temperature at",
     "OverWires": "nominal lower upper fit measured uncertainty at_temperature wire",
-    "Mesh": "wheel centre_distance shift ball contact",
+    "Mesh": "wheel centre_distance shift ball",
     "Cutter": "kind bar_diameter overhang",
     "Grinding": "wheel_radius step form_error stop_error way shank_side touched_at",
     "Machine": "kind worm_ratio axis_runout hole_circles",
