@@ -112,6 +112,17 @@ def _part(
                 message = _holes(surface, shown)
         if message is not None:
             yield (name, key), message
+        elif isinstance(surface, Round) and (wrong := _letter(surface)):
+            yield (name, "diameter"), wrong
+
+
+def _letter(surface: Round) -> str | None:
+    """A class of the other kind: capitals are for holes, small letters for shafts (ISO 286)."""
+    fit = surface.diameter.fit
+    if fit is None or surface.kind not in ("bore", "cylinder") or fit[0].isupper() == (surface.kind == "bore"):
+        return None
+    says = "capitals are for holes" if surface.kind == "cylinder" else "small letters are for shafts"
+    return f"{fit} is no class of a {surface.kind}: {says}. Write {fit.swapcase()}, or the limits"
 
 
 def _ends(surfaces: list[Surface]) -> tuple[float, float]:

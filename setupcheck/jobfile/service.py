@@ -19,6 +19,11 @@ class Warmth:
     hub: float
     shaft: float
 
+    def told(self) -> str:
+        """`5 degC`, or hub and shaft apart."""
+        same = self.hub == self.shaft
+        return f"{self.hub:g} degC" if same else f"hub {self.hub:g}, shaft {self.shaft:g} degC"
+
 
 def _state(given: object) -> Warmth:
     if isinstance(given, dict):

@@ -28,6 +28,10 @@ class Window:
     high: float
     why: str
 
+    def told(self) -> str:
+        """`14.8 to 40.9 um`."""
+        return f"{self.low * 1e3:.1f} to {self.high * 1e3:.1f} um"
+
 
 def grip_needed(pair: Pair, asked: float, friction: float) -> float:
     """Interference in service, whatever the temperature, that carries the load with the slip factor [mm].
@@ -91,7 +95,7 @@ def suits(floor: Floor, join: Join, sizes: JointSizes, window: Window) -> str:
     """
     inches = floor.loaded.job.units == "in"
     fine, places = ("thou", 2) if inches else ("um", 1)
-    any_pair = f"any pair with {show(window.low, fine, places)} to {show(window.high, fine, places)} of interference"
+    any_pair = f"any pair with {_inward(window, fine, places)} of interference"
     bore, journal = (_measured(floor, floor.loaded.ref(text)) for text in (join.outer, join.inner))
     if bore == journal:
         return f"{any_pair} on diameter at 20 degC"
@@ -110,7 +114,20 @@ def suits(floor: Floor, join: Join, sizes: JointSizes, window: Window) -> str:
     if low > high:
         return f"{any_pair}, which is less than the reading's own uncertainty leaves"
     unit, digits = ("in", 5) if inches else ("mm", 4)
+    step = 25.4e-5 if inches else 1e-4
+    low, high = math.ceil(low / step - _SAME) * step, math.floor(high / step + _SAME) * step
     return f"{what} of {show(low, unit, digits)} to {show(high, unit, digits)}"
+
+
+_SAME = 1e-6
+"""Share of a shown step that is rounding alone. Source: our choice."""
+
+
+def _inward(window: Window, unit: str, digits: int) -> str:
+    """Both ends rounded into the window, so that what is printed passes."""
+    step = (0.0254 if unit == "thou" else 0.001) * 10.0**-digits
+    low, high = math.ceil(window.low / step - _SAME) * step, math.floor(window.high / step + _SAME) * step
+    return f"{show(low, unit, digits)} to {show(high, unit, digits)}"
 
 
 def _measured(floor: Floor, ref: Ref) -> bool:
@@ -138,15 +155,14 @@ def pairs_said(pairs: tuple[MeasuredPair, ...], window: Window, op: int) -> str 
         return "none of the measured pairs suits"
     middle = (window.low + window.high) / 2.0
     best = min(good, key=lambda p: abs(p.journal - p.bore - middle))
-    return f"{FITS}: {best.name}"
+    return f"{FITS}: {best.name}, whose sizes now belong under diameter as measured"
 
 
 def pairs_told(pairs: tuple[MeasuredPair, ...], floor: Floor, window: Window) -> str:
     """Each measured pair with its interference, and what speaks against it. Source: `pairs_said`."""
     fine, places = ("thou", 2) if floor.loaded.job.units == "in" else ("um", 1)
-    low, high = show(window.low, fine, places), show(window.high, fine, places)
     each = ", ".join(f"{p.name} {show(p.journal - p.bore, fine, places)} ({_verdict(p, window)})" for p in pairs)
-    return f"{each}; {low} to {high} suits"
+    return f"{each}; {_inward(window, fine, places)} suits"
 
 
 def pairs_fit(said: str) -> str:

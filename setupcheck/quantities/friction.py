@@ -21,6 +21,10 @@ class Friction:
     kind: str
     note: str = ""
 
+    def told(self) -> str:
+        """`0.17 to 0.25 (from memory)`."""
+        return f"{self.low:g} to {self.high:g} ({self.kind})"
+
 
 @cache
 def table() -> dict[tuple[str, str, str, str], Friction]:

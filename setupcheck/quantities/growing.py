@@ -116,9 +116,15 @@ def growth_in_words(pair: Pair, grip: float, join: Join, floor: Floor) -> str:
 
 @record
 class Moved:
-    """A finished size with limits that the joint moves [mm]: whose, by how much at most, and the width of its limits."""
+    """A finished size with limits that the joint moves at 20 degC [mm].
+
+    surface  whose;  closes  a hole, else an outside that grows;  least, by  of the loosest and of the tightest pair
+    width    of its limits
+    """
 
     surface: str
+    closes: bool
+    least: float
     by: float
     width: float
 
@@ -128,13 +134,13 @@ class Moved:
         return self.by / self.width
 
 
-def moved(floor: Floor, join: Join, pair: Pair, grip: float, op: int) -> Moved | None:
+def moved(floor: Floor, join: Join, pair: Pair, most: float, least: float, op: int) -> Moved | None:
     """The finished size that the joint moves most for its limits; None where none has limits, or all are cut afterwards.
 
     Outsides of the hub that are used afterwards grow, holes of the shaft close, over the length of the joint.
     Source: Lamé's displacement.
     """
-    return max(_moved(floor, join, pair, grip, op), key=lambda m: m.share, default=None)
+    return max(_moved(floor, join, pair, (max(least, 0.0), most), op), key=lambda m: m.share, default=None)
 
 
 def share_moved(moved: Moved) -> float:
@@ -144,14 +150,18 @@ def share_moved(moved: Moved) -> float:
 
 def moved_in_words(moved: Moved) -> str:
     """Which size moves by how much, and what would do. Source: `moved`."""
-    return (
-        f"{moved.surface} moves by up to {show(moved.by, 'um', 1)}, its limits are {show(moved.width, 'um', 1)} apart: finish "
-        "it after the joint, or make it that much off."
+    does, before = ("closes", "larger") if moved.closes else ("grows", "smaller")
+    spread, middle = moved.by - moved.least, (moved.by + moved.least) / 2.0
+    said = (
+        f"{moved.surface} {does} by {show(moved.least, 'um', 1)} to {show(moved.by, 'um', 1)} at 20 degC, its limits are "
+        f"{show(moved.width, 'um', 1)} apart: finish it after the joint"
     )
+    if spread >= moved.width:
+        return f"{said}; no size before it comes out inside them for every pair."
+    return f"{said}, or make it {show(middle, 'um', 0)} {before} before, with {show(moved.width - spread, 'um', 0)} of limits."
 
 
-def _moved(floor: Floor, join: Join, pair: Pair, grip: float, op: int) -> Iterator[Moved]:
-    closes = hole_closing(pair, grip) or 0.0
+def _moved(floor: Floor, join: Join, pair: Pair, grips: tuple[float, float], op: int) -> Iterator[Moved]:
     for text, kind in ((join.outer, "cylinder"), (join.inner, "bore")):
         part = floor.loaded.ref(text).part
         for name, node in floor.loaded.job.parts[part].surfaces.items():
@@ -164,9 +174,12 @@ def _moved(floor: Floor, join: Join, pair: Pair, grip: float, op: int) -> Iterat
             if _cut_after(floor, part, name, op) or not over_the_joint(floor, join, Ref(part, name)):
                 continue
             limits = limits_of(node.diameter, f"parts.{part}.surfaces.{name}.diameter", floor)
-            by = growth_of(pair, grip, node.diameter.value) if kind == "cylinder" else closes
+            least, most = (
+                growth_of(pair, grip, node.diameter.value) if kind == "cylinder" else hole_closing(pair, grip) or 0.0
+                for grip in grips
+            )
             if isinstance(limits, tuple) and limits[1] > limits[0]:
-                yield Moved(f"{part}.{name}", by, limits[1] - limits[0])
+                yield Moved(f"{part}.{name}", kind == "bore", least, most, limits[1] - limits[0])
 
 
 def _used_after(floor: Floor, ref: Ref, op: int) -> bool:
@@ -258,7 +271,7 @@ GROWING = (
         "",
         0,
         moved,
-        {**_HERE, **_MOST, "op": "@op"},
+        {**_HERE, **_PAIR, "most": "fit.bench_most", "least": "fit.bench_least", "op": "@op"},
         "the finished size that the joint moves most",
     ),
     Quantity("fit.share_moved", "join", "%", 0, share_moved, {"moved": "fit.moved"}, "its movement over its limits"),

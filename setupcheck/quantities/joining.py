@@ -26,6 +26,12 @@ class JointSizes:
     journal_low: float
     journal_high: float
 
+    def told(self) -> str:
+        """`bore 32.0000 to 32.0110 mm, journal 32.0270 to 32.0330 mm`."""
+        bore, journal = (self.bore_low, self.bore_high), (self.journal_low, self.journal_high)
+        of = {"bore": bore, "journal": journal}
+        return ", ".join(f"{name} {low:.4f} to {high:.4f} mm" for name, (low, high) in of.items())
+
 
 def limits_of(given: Dimension, path: str, floor: Floor) -> tuple[float, float] | Open:
     """Smallest and largest size [mm]: as measured (brought back to 20 degC), by its limits, or by its ISO 286 class.

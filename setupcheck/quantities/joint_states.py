@@ -50,6 +50,8 @@ def least_in(pair: Pair, least: float, smoothing: float, state: Warmth) -> float
 def torque_in(pair: Pair, grip: float, friction: float) -> float:
     """Torque that the loosest pair holds in one state, with nothing along the axis [N mm]: sum of mu p pi D^2 L/2, over 1.2.
 
+    p of each section by Lamé at the low ends of both moduli, L its length, mu the lowest friction.
+
     Source: Coulomb friction and Lamé, DIN 7190's steps (from memory).
     """
     return force_held(pair, grip, friction) * pair.diameter / 2.0
@@ -57,9 +59,7 @@ def torque_in(pair: Pair, grip: float, friction: float) -> float:
 
 def temperature_in_words(state: Warmth) -> str:
     """`5 degC`, or hub and shaft apart. Source: the job file."""
-    if state.hub == state.shaft:
-        return f"{state.hub:g} degC"
-    return f"hub {state.hub:g}, shaft {state.shaft:g} degC"
+    return state.told()
 
 
 def hoop_outside(pair: Pair, grip: float) -> float:

@@ -37,6 +37,22 @@ class Pair:
     diameter: float
     sections: tuple[Section, ...]
 
+    def told(self) -> str:
+        """Diameter, elastic constants, expansions and sections, from which every figure of the joint can be worked out."""
+        both = ((self.hub, "hub"), (self.shaft, "shaft"))
+        each = [f"D {self.diameter:g} mm"]
+        for found, name in both:
+            e, up, down = found.modulus, found.heating, found.cooling
+            each.append(
+                f"{name} {found.name}: E {e.low / 1e3:g} to {e.high / 1e3:g} GPa, nu {found.poisson.value:g}, expansion "
+                f"{up.low * 1e6:.1f} to {up.high * 1e6:.1f}e-6/K warm, {down.low * 1e6:.1f} to {down.high * 1e6:.1f}e-6/K cold"
+            )
+        each += [
+            f"{s.length:g} mm of outside {s.outside:g}{' (roots)' if s.toothed else ''}, hole {s.hole:g}"
+            for s in self.sections
+        ]
+        return "; ".join(each)
+
     def joints(self, question: Question) -> tuple[fits.Joint, ...]:
         """Each section with the moduli that are safe for a question. Raises: OutOfRange for sizes that are no joint."""
         try:

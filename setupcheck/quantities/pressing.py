@@ -6,7 +6,8 @@ import math
 
 from setupcheck.jobfile.setups import Join
 from setupcheck.physics import interference as fits
-from setupcheck.quantities.book import Open, Quantity
+from setupcheck.quantities.book import Open, OutOfRange, Quantity
+from setupcheck.quantities.contents import material_class
 from setupcheck.quantities.friction import Friction
 from setupcheck.quantities.pairing import Pair
 from setupcheck.quantities.shop import Floor
@@ -33,11 +34,19 @@ def press_off_force(pair: Pair, most: float, rubbing: Friction) -> float:
     )
 
 
-def lead_in(join: Join, op: int) -> float | Open | None:
-    """Length of the chamfer that leads a pressed part in [mm]; None for a joint that is not pressed. Source: the job file."""
+def lead_in(join: Join, pair: Pair, op: int) -> float | Open | None:
+    """Length of the chamfer that leads a pressed part in [mm]; None for a joint that is not pressed. Source: the job file.
+
+    Raises: OutOfRange for one that leaves less than half of the seat. It is no part of the seat as drawn.
+    """
     if join.by != "press":
         return None
-    return join.lead_in if join.lead_in is not None else Open((f"setups.{op}.join.lead_in",))
+    if join.lead_in is None:
+        return Open((f"setups.{op}.join.lead_in",))
+    seat = math.fsum(s.length for s in pair.sections)
+    if join.lead_in > seat / 2.0:
+        raise OutOfRange(f"a lead-in of {join.lead_in:g} mm leaves less than half of a seat of {seat:g} mm")
+    return join.lead_in
 
 
 def press_allowed(floor: Floor, join: Join, op: int) -> float | Open | None:
@@ -56,10 +65,32 @@ def press_allowed(floor: Floor, join: Join, op: int) -> float | Open | None:
     return machine.rating / IN_HAND
 
 
+GALLS = "austenitic-stainless"
+"""Class of materials that gall on themselves. Source: common practice."""
+
+
+def galls(floor: Floor, join: Join, op: int) -> str | Open | None:
+    """yes or no: whether two austenitic stainless parts are pressed together dry; None for a joint that is not pressed.
+
+    Source: the job file; classes of materials by their names.
+    """
+    if join.by != "press":
+        return None
+    names = [floor.loaded.ref(text).part for text in (join.outer, join.inner)]
+    materials = [floor.loaded.job.parts[name].material for name in names]
+    missing = tuple(f"parts.{name}.material" for name, one in zip(names, materials, strict=True) if one is None)
+    if missing:
+        return Open(missing)
+    if any(material_class(one or "") != GALLS for one in materials):
+        return "no"
+    return Open((f"setups.{op}.join.joint",)) if join.joint is None else "yes" if join.joint == "degreased" else "no"
+
+
 _HERE = {"floor": "route.floor", "join": ":"}
 _PAIR = {"pair": "fit.pair"}
 
 PRESSING = (
+    Quantity("fit.galls", "join", "", 0, galls, {**_HERE, "op": "@op"}, "whether two stainless parts are pressed dry"),
     Quantity(
         "fit.press_off",
         "join",
@@ -70,7 +101,13 @@ PRESSING = (
         "force to press or pull the tightest pair off, cold",
     ),
     Quantity(
-        "fit.lead_in", "join", "mm", 1, lead_in, {"join": ":", "op": "@op"}, "chamfer that leads a pressed part in"
+        "fit.lead_in",
+        "join",
+        "mm",
+        1,
+        lead_in,
+        {"join": ":", **_PAIR, "op": "@op"},
+        "chamfer that leads a pressed part in",
     ),
     Quantity(
         "fit.press_force",

@@ -90,17 +90,27 @@ def weaker(limit: tuple[float, str]) -> str:
 
 
 def pressure_most(pair: Pair, grip: float) -> float:
-    """Highest pressure in the joint [MPa], in its stiffest section at the largest interference. Source: Lamé."""
+    """Highest pressure in the joint [MPa], in its stiffest section at the largest interference, high ends of both moduli.
+
+    p = (U/D) / (K_A/E_A + K_I/E_I);  K_A = (1 + Q_A^2)/(1 - Q_A^2) + nu_A, Q_A = D/D_o;  K_I = (1 + Q_I^2)/(1 - Q_I^2) - nu_I,
+    Q_I = D_i/D, and 1 - nu_I for a solid shaft.  Source: Lamé, plane stress.
+    """
     return max(fits.joint_pressure(j, interference=grip) for j in pair.joints("strength"))
 
 
 def pressure_least(pair: Pair, grip: float) -> float:
-    """Lowest pressure in the joint [MPa], in its softest section at the least interference. Source: Lamé."""
+    """Lowest pressure in the joint [MPa], in its softest section at the least interference, low ends of both moduli.
+
+    p as in `pressure_most`.  Source: Lamé, plane stress.
+    """
     return min(fits.joint_pressure(j, interference=grip) for j in pair.joints("holding"))
 
 
 def hoop_most(pair: Pair, grip: float) -> float:
-    """Largest tangential stress at the hub's bore [MPa]. Source: Lamé."""
+    """Largest tangential stress at the hub's bore [MPa], in the section where it is largest: p (1 + Q^2)/(1 - Q^2).
+
+    p as in `pressure_most`.  Source: Lamé, plane stress.
+    """
     return max(
         fits.stresses(j, pressure=fits.joint_pressure(j, interference=grip)).hub_bore_tangential
         for j in pair.joints("strength")
@@ -205,6 +215,8 @@ def holds_to(pair: Pair, least: float, smoothing: float, friction: float, asked:
 
     Source: physics.heating.
     """
+    if asked <= 0.0:
+        return None  # without a load it holds until it is loose
     unit = force_held(pair, 1.0, friction)  # for each mm of interference, as pressure is straight in it
     return _finite(
         holding_temperature(least - smoothing, needed=asked / unit, diameter=pair.diameter, **_expansions(pair))

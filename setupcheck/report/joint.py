@@ -29,8 +29,11 @@ BENEATH: tuple[tuple[str, ...], ...] = (
         "peaks lose {fit.smoothing}; the loosest holds {fit.torque_1988} by the factor 0.8 (DIN 7190:2001), {fit.torque_2017} by "
         "0.4 (said of 2017)",
     ),
-    ("the loosest holds {fit.slip_safety} times what it must in service",),
-    ("holds what it must up to {fit.holds_to} and is loose at {fit.loosens_at}", "is loose at {fit.loosens_at}"),
+    ("the loosest holds {fit.slip_safety} times what it must in service; the torques above are that over 1.2",),
+    (
+        "with hub and shaft equally warm it holds what it must up to {fit.holds_to} and is loose at {fit.loosens_at}",
+        "with hub and shaft equally warm it is loose at {fit.loosens_at}",
+    ),
     ("the tightest pair yields below {fit.yields_below}",),
     (
         "pressing in takes up to {fit.press_force}, off again cold up to {fit.press_off}; the press may be asked for "
@@ -97,6 +100,9 @@ def _table(found: Review, scope: Scope, join: Join) -> Iterator[str]:
     for state, name in STATES:
         at = found.book.get(f"fit.{state}_at", scope)
         label = f"{name} {at.value}" if isinstance(at, Known) else f"{name} {'open' if state != 'bench' else '20 degC'}"
+        if len(label) > LABEL - 3:  # hub and shaft apart: the label takes a line of its own
+            yield f"  {label}"
+            label = ""
         yield f"  {label}".ljust(LABEL) + "".join(_cell(found, scope, f"fit.{state}_{c}") for c in COLUMNS)
     limits = {"most": "fit.elastic", "least": "fit.grip_needed"}
     row = "".join(_cell(found, scope, limits[c]) if c in limits else " " * CELL for c in COLUMNS)

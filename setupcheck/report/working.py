@@ -3,7 +3,9 @@
 from __future__ import annotations
 
 import inspect
+import re
 from collections.abc import Iterator, Sequence
+from typing import Protocol, runtime_checkable
 
 from setupcheck.jobfile.reading import LoadedJob
 from setupcheck.ledger.causes import Cause
@@ -48,6 +50,7 @@ COUNTED = {
 """What a number without a unit counts."""
 
 RECORD = "(no single number)"
+_NAMED = re.compile(r"`([a-z_]+)`")
 
 
 def as_working(loaded: LoadedJob, book: Book, asked: str) -> str:
@@ -74,7 +77,21 @@ def _answer(book: Book, name: str, scope: Scope, answer: Answer) -> str:
     if isinstance(answer.value, float | int) and not isinstance(answer.value, bool):
         number = show(float(answer.value), book.unit(name, scope) or "1", book.digits(name, scope))
         return f"{number} {COUNTED.get(name, '')}".rstrip()
-    return clean(str(answer.value)) if isinstance(answer.value, str) else RECORD
+    if isinstance(answer.value, str):
+        return clean(answer.value)
+    told = [each.told() for each in _parts(answer.value) if isinstance(each, Told)]
+    return clean("; ".join(told)) if told else RECORD
+
+
+@runtime_checkable
+class Told(Protocol):
+    """A record that says itself what a formula takes from it, in words and with units."""
+
+    def told(self) -> str: ...
+
+
+def _parts(value: object) -> tuple[object, ...]:
+    return value if isinstance(value, tuple) else (value,)
 
 
 def _working(loaded: LoadedJob, book: Book, quantity: Quantity, scope: Scope) -> Iterator[str]:
@@ -87,7 +104,7 @@ def _working(loaded: LoadedJob, book: Book, quantity: Quantity, scope: Scope) ->
     if quantity.name in OF_A_STACK:
         yield from _formula(OF_A_STACK[quantity.name])
     else:
-        yield from _stated(quantity.of)
+        yield from _stated(book, quantity.of)
     for argument, name in quantity.inputs.items():
         yield from _input(loaded, book, scope, argument, name)
     if isinstance(answer, Known) and answer.rests_on:
@@ -99,9 +116,11 @@ def _formula(told: tuple[str, str], first: str = "  ") -> Iterator[str]:
     yield from wrap(formula + (f". Source: {source}." if source else ""), first=first, rest=f"{first}  ")
 
 
-def _stated(of: object) -> Iterator[str]:
-    """Formula and source as the function itself states them."""
+def _stated(book: Book, of: object) -> Iterator[str]:
+    """Formula and source as the function itself states them; another function it names is told by its quantity."""
+    of_function = {getattr(q.of, "__name__", ""): name for name, q in reversed(book.quantities.items())}
     text = (inspect.getdoc(of) or "").partition(">>>")[0]
+    text = _NAMED.sub(lambda found: f"`{of_function.get(found[1], found[1])}`", text)
     for paragraph in filter(None, (line.strip() for line in text.splitlines())):
         yield from wrap(paragraph, first="  ", rest="    ")
 

@@ -182,6 +182,7 @@ QUANTITIES: Mapping[str, FakeQuantity] = {
         FakeQuantity("fit.length_ratio", "join", "1", 2),
         FakeQuantity("fit.share_moved", "join", "%", 0),
         FakeQuantity("fit.advice_moved", "join", "", 0),
+        FakeQuantity("fit.galls", "join", "", 0),
         FakeQuantity("fit.lead_in", "join", "mm", 1),
         FakeQuantity("fit.pairs_fit", "join", "", 0),
         FakeQuantity("fit.pairs_told", "join", "", 0),
