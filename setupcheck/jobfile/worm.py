@@ -9,6 +9,7 @@ from typing import Annotated, Literal
 from pydantic import AfterValidator, Field, ValidationInfo, model_validator
 
 from setupcheck import notation
+from setupcheck.jobfile.marks import Mark
 from setupcheck.jobfile.models import Dim, Dimension, RunOut
 from setupcheck.jobfile.types import (
     Angle,
@@ -103,6 +104,7 @@ class Mesh(Shop):
 
     ball     diameter of the balls that the finished wheel is measured over [mm]
     contact  `exact`: contact, transmission error and insert from the exact gap, which takes a second more
+    mark     what blue showed on the finished wheel
     """
 
     wheel: str
@@ -113,3 +115,4 @@ class Mesh(Shop):
     serves_at: Service | None = None
     ball: Size | None = None
     contact: Literal["exact"] | None = None
+    mark: Mark | None = None

@@ -18,6 +18,7 @@ from setupcheck.quantities.heat_checks import HEAT_CHECKS
 from setupcheck.quantities.joining import JOINING
 from setupcheck.quantities.joint_heat import HEAT
 from setupcheck.quantities.joint_states import IN_STATES
+from setupcheck.quantities.marking import MARK
 from setupcheck.quantities.measuring import MEASURE
 from setupcheck.quantities.meshing import MESHING
 from setupcheck.quantities.opening import OPENING
@@ -277,6 +278,7 @@ TABLES: tuple[Quantity, ...] = (
     *SHAPE,
     *EXACT,
     *MESHING,
+    *MARK,
     *WORM,
     *THREAD,
     *WHEEL,

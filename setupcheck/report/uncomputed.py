@@ -31,6 +31,7 @@ NOT_LOOKED_AT: Mapping[str, Mapping[str, str]] = {
         "shaft_angle_error": "error of the shaft angle {said}",
         "housing": "housing of {said}",
         "serves_at": "serves from {said}",
+        "mark": "mark of blue ({said})",
     },
     "Cutter": {
         "tip_radius": "tip radius {said}",
@@ -159,7 +160,7 @@ def _of_the_wheel(loaded: LoadedJob) -> Iterator[str]:
             if (ref.part, ref.surface) != (wheel.part, wheel.surface) or kind != "single-point":
                 continue
             path = f"setups.{setup.op}.cut.{name}"
-            yield from (f"{path}.depth", f"{path}.depth_from", "worm.profile", "worm.thread_thickness")
+            yield from (f"{path}.depth", f"{path}.depth_from", "worm.profile", "worm.thread_thickness", "mesh.mark")
             yield from (f"cutters.{cut.cutter}.tip_radius", f"cutters.{cut.cutter}.insert")
             if cut.depth_from is not None:
                 touched = loaded.ref(cut.depth_from.surface, wheel.part)

@@ -29,10 +29,10 @@ Cause = Literal["none", "tilt", "offset", "tilt and offset", "unexplained"]
 EYE = 0.04
 """How well the middle of a mark is seen, as a share of the face: about half a millimetre. Source: our screening choice."""
 
-TILTS = tuple(math.radians(minutes / 60.0) for minutes in (1.5, 3.0, 6.0, 12.0, 24.0, 48.0))
+TILTS = tuple(math.radians(minutes / 60.0) for minutes in (2.0, 4.0, 6.0, 9.0, 13.0, 20.0, 30.0, 48.0))
 """Errors of the tilt for which the mark is worked out, either way [rad]. Chosen here: beyond it the worm rides on corners."""
 
-OFFSETS = (0.008, 0.016, 0.032, 0.064, 0.128, 0.256)
+OFFSETS = (0.01, 0.02, 0.035, 0.05, 0.07, 0.1, 0.15, 0.25)
 """Errors of the mid-plane for which the mark is worked out, either way [modules]. Chosen here, likewise."""
 
 FINE = 1201
@@ -269,5 +269,5 @@ def _with_heights(reading: Reading, right: Seen, left: Seen, chart: Chart) -> Re
     wrong = [{e, s} == {"tip", "root"} for e, s in zip(expected, seen, strict=True)]
     if not any(wrong):
         return reading
-    said = "the right flank" if wrong == [True, False] else "the left flank" if wrong == [False, True] else "both flanks"
+    said = "both flanks" if all(wrong) else "one flank"
     return Reading("unexplained", why=f"the heights on {said} are not those that belong to the places along the face")
