@@ -151,7 +151,18 @@ def misses(data: Mapping[str, object]) -> Iterator[Miss]:
     place = map_of(data.get("place"))
     yield from _surface(place.get("axis"), ("place", "axis"), surfaces, None)
     yield from _surface(map_of(place.get("worm_axis")).get("from"), ("place", "worm_axis", "from"), surfaces, None)
-    yield from _surface(map_of(data.get("mesh")).get("wheel"), ("mesh", "wheel"), surfaces, None)
+    yield from _mesh(map_of(data.get("mesh")), surfaces)
+
+
+def _mesh(mesh: Mapping[str, object], surfaces: Mapping[str, Sequence[str]]) -> Iterator[Miss]:
+    """The wheel, and the faces that tell its mark of blue; those may leave the wheel's name away."""
+    yield from _surface(mesh.get("wheel"), ("mesh", "wheel"), surfaces, None)
+    wheel = name_of(mesh.get("wheel"))
+    found = find_surface(wheel, surfaces, None) if wheel is not None else None
+    own, mark = found.part if isinstance(found, Ref) else None, map_of(mesh.get("mark"))
+    yield from _surface(mark.get("seen_from"), ("mesh", "mark", "seen_from"), surfaces, own)
+    for side in ("right", "left"):
+        yield from _surface(map_of(mark.get(side)).get("towards"), ("mesh", "mark", side, "towards"), surfaces, own)
 
 
 def _unnameable(data: Mapping[str, object], surfaces: Mapping[str, Sequence[str]]) -> Iterator[Miss]:

@@ -9,6 +9,7 @@ from typing import Annotated, Literal
 from pydantic import AfterValidator, Field, ValidationInfo, model_validator
 
 from setupcheck import notation
+from setupcheck.jobfile.marks import Mark
 from setupcheck.jobfile.models import Dim, Dimension, RunOut
 from setupcheck.jobfile.types import (
     Angle,
@@ -116,6 +117,7 @@ class Mesh(Shop):
     ball     diameter of the balls that the finished wheel is measured over [mm]
     contact  `exact`: contact, transmission error and insert from the exact gap, which takes a second more
     error_budget  transmission error that the cut may leave, along the reference circle, end to end over one pitch [mm]
+    mark     what blue showed on the finished wheel
     """
 
     wheel: str
@@ -127,3 +129,4 @@ class Mesh(Shop):
     ball: Size | None = None
     contact: Literal["exact"] | None = None
     error_budget: Budget | None = None
+    mark: Mark | None = None

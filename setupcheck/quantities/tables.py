@@ -22,6 +22,7 @@ from setupcheck.quantities.inserts import INSERTS
 from setupcheck.quantities.joining import JOINING
 from setupcheck.quantities.joint_heat import HEAT
 from setupcheck.quantities.joint_states import IN_STATES
+from setupcheck.quantities.marking import MARK
 from setupcheck.quantities.measuring import MEASURE
 from setupcheck.quantities.meshing import MESHING
 from setupcheck.quantities.opening import OPENING
@@ -285,6 +286,7 @@ TABLES: tuple[Quantity, ...] = (
     *CONTACT_ADVICE,
     *INSERTS,
     *MESHING,
+    *MARK,
     *WORM,
     *THREAD,
     *WHEEL,

@@ -33,6 +33,7 @@ NOT_LOOKED_AT: Mapping[str, Mapping[str, str]] = {
         "serves_at": "serves from {said}",
         "contact": "contact {said} (of a wheel cut by a single point only)",
         "error_budget": "error budget {said} (held against `contact: exact` only)",
+        "mark": "mark of blue ({said})",
     },
     "Cutter": {
         "tip_radius": "tip radius {said}",
@@ -162,7 +163,7 @@ def _of_the_wheel(loaded: LoadedJob) -> Iterator[str]:
             if (ref.part, ref.surface) != (wheel.part, wheel.surface) or kind != "single-point":
                 continue
             path = f"setups.{setup.op}.cut.{name}"
-            yield from (f"{path}.depth", f"{path}.depth_from", "worm.profile", "worm.thread_thickness")
+            yield from (f"{path}.depth", f"{path}.depth_from", "worm.profile", "worm.thread_thickness", "mesh.mark")
             yield from (f"cutters.{cut.cutter}.tip_radius", f"cutters.{cut.cutter}.insert")
             if job.mesh.contact is not None:
                 yield from (f"cutters.{cut.cutter}.{key}" for key in ("grinding", "width", "width_at"))

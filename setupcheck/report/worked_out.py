@@ -68,6 +68,8 @@ SENTENCES: Sequence[tuple[str, str, str]] = (
         "wheel",
         "over balls {mesh.over_balls} as planned, {mesh.over_balls_tight} without backlash; best ball {mesh.best_ball}",
     ),
+    ("mesh", "mark", "{mark.says}"),
+    ("mesh", "mark", "{mark.next}"),
     (
         "stack",
         "backlash",

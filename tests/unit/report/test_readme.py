@@ -11,7 +11,7 @@ from typing import Literal, get_args, get_origin
 import pytest
 from pydantic import BaseModel
 
-from setupcheck.jobfile import grinding, models, properties, setups, worm
+from setupcheck.jobfile import grinding, marks, models, properties, setups, worm
 
 README = (Path(__file__).resolve().parents[3] / "README.md").read_text(encoding="utf-8")
 TABLE = README.partition("### Words the job file knows")[2].partition("\n## ")[0]
@@ -30,7 +30,7 @@ def records() -> dict[str, type[BaseModel]]:
     """All records of the job file by name."""
     found = {
         name: r
-        for module in (grinding, models, properties, setups, worm)
+        for module in (grinding, models, properties, setups, worm, marks)
         for name, r in vars(module).items()
         if inspect.isclass(r)
     }
@@ -65,7 +65,7 @@ def test_the_ends_of_a_part_stand_in_the_table() -> None:
 
 
 def test_the_table_knows_no_word_that_the_job_file_does_not_know() -> None:
-    known = set().union(*words().values()) | {"+z", "-z", "made: stock", "contact: exact"}
+    known = set().union(*words().values()) | {"+z", "-z", "made: stock", "ends"}
     keys = {key for record in records().values() for key in record.model_fields}
     told = set(re.findall(r"`([^`]+)`", TABLE))
     assert set() == told - known - keys

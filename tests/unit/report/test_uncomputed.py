@@ -8,7 +8,7 @@ import json
 import pytest
 from pydantic import BaseModel
 
-from setupcheck.jobfile import grinding, heating, models, properties, setups, worm
+from setupcheck.jobfile import grinding, heating, marks, models, properties, setups, worm
 from setupcheck.report.json import as_json
 from setupcheck.report.text import as_text
 from setupcheck.report.uncomputed import NOT_LOOKED_AT, in_lines, uncomputed
@@ -31,6 +31,8 @@ READ = {
     "Thickness": "nominal lower upper fit measured uncertainty at_temperature at",
     "OverWires": "nominal lower upper fit measured uncertainty at_temperature wire",
     "Mesh": "wheel centre_distance shift ball",
+    "Mark": "seen_from right left on_teeth film",
+    "Spot": "at towards height share",
     "Cutter": "kind bar_diameter overhang",
     "Grinding": "wheel_radius step form_error stop_error way shank_side touched_at",
     "Machine": "kind worm_ratio axis_runout hole_circles",
@@ -63,11 +65,11 @@ READ = {
     "waive checked",
 }
 """Entries that some figure, rule, caution or check reads, that only name things, or that are told by their own line
-(size classes and limits, slot widths, the room, everything inside `heat` and `depth_from`)."""
+(size classes and limits, slot widths, the room, everything inside `heat`, `mark` and `depth_from`)."""
 
 RECORDS = {
     record.__name__: record  # not the name it is found under: some have a second one
-    for module in (grinding, models, properties, setups, heating, worm)
+    for module in (grinding, models, properties, setups, heating, worm, marks)
     for record in vars(module).values()
     if inspect.isclass(record)
     and issubclass(record, BaseModel)
