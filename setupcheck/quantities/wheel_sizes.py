@@ -123,14 +123,17 @@ def width_advice(width: float, usual: float, floor: Floor) -> str:
 
 
 def reach(floor: Floor, of: Wheel, width: float) -> float | Open:
-    """How far along the worm its thread touches the teeth [mm]. Source: worm.geometry.contact_reach."""
+    """How far along the worm its thread touches the teeth [mm].
+
+    Raises: OutOfRange where it touches none, as with a module that is not the wheel's.  Source: worm.geometry.contact_reach.
+    """
     worm = floor.loaded.job.worm
     assert worm is not None
     missing = tuple(f"worm.{key}" for key in ("tip_diameter", "pressure_angle") if getattr(worm, key) is None)
     if worm.tip_diameter is None or worm.pressure_angle is None:
         return Open(missing)
     try:
-        return geometry.contact_reach(
+        found = geometry.contact_reach(
             starts=of.starts,
             axial_module=of.module,
             pitch_diameter=of.pitch_diameter,
@@ -143,6 +146,9 @@ def reach(floor: Floor, of: Wheel, width: float) -> float | Open:
         )
     except ValueError as why:
         raise OutOfRange(str(why)) from None
+    if found <= 0.0:
+        raise OutOfRange("a worm of these sizes touches nothing of the wheel's teeth")
+    return found
 
 
 def _rim(floor: Floor) -> float | None:
