@@ -99,7 +99,7 @@ def shape(cut: WheelCut) -> Shape:
         made = Shape(cut, fly.crowning(plunge), fly.twist(plunge))
     except ValueError as why:
         raise OutOfRange(str(why)) from None
-    if made.twist < 0.0:  # the gap is wider than any tooth count here leaves; the second order says nothing of such a flank
+    if made.twist < 0.0:  # the second order says nothing of such a flank
         raise OutOfRange("the thread is too thick for this wheel: its flank has no twist that could be computed")
     return made
 
