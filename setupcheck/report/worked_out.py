@@ -43,11 +43,8 @@ SENTENCES: Sequence[tuple[str, str, str]] = (
     ("worm", "worm", "quotient {worm.quotient}, usual tip {worm.usual_tip} and root {worm.usual_root}"),
     ("worm", "worm", "its flank stands up to {worm.off_straight} off a straight axial line"),
     ("worm", "worm", "{worm.candidates}"),
-    (
-        "worm",
-        "thread",
-        "{worm.thickness} thick at the reference diameter; over wires of {worm.wire} it measures {worm.over_wires}",
-    ),
+    ("worm", "thread", "{worm.thickness} thick at the reference diameter"),
+    ("worm", "thread", "over wires of {worm.wire} it measures {worm.over_wires}"),
     ("worm", "thread", "best wire {worm.best_wire}"),
     ("worm", "thread", "{worm.which_groove}"),
     (

@@ -112,3 +112,16 @@ def test_worms_of_odd_sizes_end_in_findings_or_in_a_told_mistake_of_the_file(tex
         told(text)
     except JobError as refused:
         assert refused.problems
+
+
+def test_a_missing_pressure_angle_is_asked_of_the_worm() -> None:
+    found = told(JOB.replace("  pressure_angle: 20 deg\n", ""))
+    asked = {m for f in found.evaluation.findings for m in f.missing}
+    assert asked == {"worm.pressure_angle"}
+
+
+def test_a_thickness_measured_further_out_is_told_at_the_reference_diameter_even_where_no_wire_fits() -> None:
+    found = told(JOB.replace(THREAD, "{measured: 2.310 mm, uncertainty: 4 um, at: 25}"))
+    (said,) = (line for line in worked_out(found) if line.startswith("thread:"))
+    # 2.310 + 1 mm x tan(20 deg); no wire that touches such a thread at the reference diameter stands proud of the tip
+    assert said == "thread: 2.6740 mm thick at the reference diameter; best wire 2.165 mm"
