@@ -329,14 +329,30 @@ def high(arcs: tuple[float, float]) -> float:
     return arcs[1]
 
 
-def at_wheel(arc: float, of: Wheel) -> float:
-    """Backlash as an angle of the wheel [rad]: j/r2. Source: geometry."""
-    return arc / (of.diameter / 2.0)
+def interference(floor: Floor, arcs: tuple[float, float]) -> str | None:
+    """A backlash whose lowest end is below zero, as the interference it is; None above zero. Source: mesh.arcs."""
+    if arcs[0] >= 0.0:
+        return None
+    unit, digits = ("thou", 2) if floor.loaded.job.units == "in" else ("um", 1)
+    least, most = (show(abs(arc), unit, digits) for arc in arcs)
+    if arcs[1] < 0.0:
+        return f"{most} to {least} of interference along the reference circle: no backlash anywhere, the worm does not go in"
+    return (
+        f"{least} of interference to {most} of backlash along the reference circle: where it is least, the worm binds"
+    )
 
 
-def at_worm(arc: float, of: Wheel) -> float:
-    """Backlash as a turn of the worm and its handwheel or crank [rad]: j/p, p = z1 m/2. Source: geometry of the screw."""
-    return arc / (of.starts * of.module / 2.0)
+def at_wheel(arc: float, of: Wheel) -> float | None:
+    """Backlash as an angle of the wheel [rad]: j/r2; None for an interference, which is no turn. Source: geometry."""
+    return arc / (of.diameter / 2.0) if arc >= 0.0 else None
+
+
+def at_worm(arc: float, of: Wheel) -> float | None:
+    """Backlash as a turn of the worm and its handwheel or crank [rad]: j/p, p = z1 m/2; None for an interference.
+
+    Source: geometry of the screw.
+    """
+    return arc / (of.starts * of.module / 2.0) if arc >= 0.0 else None
 
 
 _FLOOR = {"floor": "route.floor"}
@@ -390,6 +406,15 @@ WHEEL = (
     ),
     _row("arc_low", "um", 1, low, {"arcs": "mesh.arcs"}, "lowest backlash along the reference circle", "stack"),
     _row("arc_high", "um", 1, high, {"arcs": "mesh.arcs"}, "highest backlash along the reference circle", "stack"),
+    _row(
+        "interference",
+        "",
+        0,
+        interference,
+        {**_FLOOR, "arcs": "mesh.arcs"},
+        "a backlash below zero, as the interference it is",
+        "stack",
+    ),
     _row("wheel_low", "arcsec", 0, at_wheel, {"arc": "mesh.arc_low", **_OF}, "lowest backlash at the wheel", "stack"),
     _row(
         "wheel_high", "arcsec", 0, at_wheel, {"arc": "mesh.arc_high", **_OF}, "highest backlash at the wheel", "stack"

@@ -71,6 +71,7 @@ SENTENCES: Sequence[tuple[str, str, str]] = (
         "{mesh.arc_low} to {mesh.arc_high} along the reference circle is {mesh.wheel_low} to {mesh.wheel_high} at the wheel and "
         "{mesh.worm_low} to {mesh.worm_high} of the worm",
     ),
+    ("stack", "backlash", "{mesh.interference}"),
 )
 """Kind of thing, what the line is about, and the sentence; it is said where every number in it is known and not zero."""
 

@@ -125,3 +125,40 @@ def test_a_thickness_measured_further_out_is_told_at_the_reference_diameter_even
     (said,) = (line for line in worked_out(found) if line.startswith("thread:"))
     # 2.310 + 1 mm x tan(20 deg); no wire that touches such a thread at the reference diameter stands proud of the tip
     assert said == "thread: 2.6740 mm thick at the reference diameter; best wire 2.165 mm"
+
+
+@pytest.mark.parametrize(
+    ("thread", "says"),
+    [
+        (
+            "{measured: 2.350 mm, uncertainty: 4 um}",
+            "backlash: 29.1 um of interference to 76.5 um of backlash along the reference circle: where it is least, the worm binds",
+        ),
+        (
+            "{measured: 2.310 mm, uncertainty: 4 um, at: 25}",
+            "backlash: 247.5 um to 353.2 um of interference along the reference circle: no backlash anywhere, the worm does not go in",
+        ),
+    ],
+)
+def test_a_backlash_below_zero_is_told_as_interference_and_not_as_a_turn_of_the_worm(thread: str, says: str) -> None:
+    (said,) = (line for line in worked_out(told(JOB.replace(THREAD, thread))) if line.startswith("backlash:"))
+    assert said == says
+
+
+@pytest.mark.parametrize(
+    ("thread", "says"),
+    [
+        ("{measured: 1.60 mm, uncertainty: 4 um}", "0.34 of its axial pitch"),
+        ("{measured: 2.310 mm, uncertainty: 4 um, at: 26}", "the diameter it was measured at (26.000 mm is written)"),
+        ("{measured: 2.90 mm, uncertainty: 4 um}", "along the axis at the reference diameter"),
+    ],
+)
+def test_a_thread_far_from_half_the_pitch_is_doubted_with_its_numbers(thread: str, says: str) -> None:
+    doubted = [f for f in told(JOB.replace(THREAD, thread)).evaluation.findings if f.rule == "MESH-011"]
+    assert [f.verdict for f in doubted] == ["warn"]
+    assert says in f"{doubted[0].message} {doubted[0].remedy}"
+
+
+def test_a_thread_that_is_not_known_is_not_doubted() -> None:
+    without = told(JOB.replace(f"  thread_thickness: {THREAD}\n", ""))
+    assert [f for f in without.evaluation.findings if f.rule == "MESH-011"] == []

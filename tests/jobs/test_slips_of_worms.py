@@ -107,6 +107,26 @@ SLIPS: dict[tuple[str, str], tuple[Slip, Slip]] = {
             "  end_float: 8 um\n  thread_thickness: {measured: 3.0800 mm, uncertainty: 4 um}\n",
         ),
     ),
+    ("MESH-011", "the wrong wires typed"): (
+        Slip(
+            ROTATOR,
+            "  thread_thickness: {measured: 2.310 mm, uncertainty: 4 um}\n",
+            "  over_wires: {measured: 27.4176, wire: 3.2, uncertainty: 4 um}\n",
+            "the worm's thread is 0.29 of its axial pitch thick, 0.35 to 0.60 is accepted",
+            "It comes out 1.3802 mm, half the pitch is 2.3562 mm. Measure the wires again (3.200 mm is written), and the size over "
+            "them.",
+            "  over_wires: {measured: 27.4176, wire: 2.55, uncertainty: 4 um}\n",
+        ),
+        Slip(
+            SPINDLE,
+            "wire: 3.40, uncertainty: 6 um}",
+            "wire: 4.30, uncertainty: 6 um}",
+            "the worm's thread is 0.29 of its axial pitch thick, 0.35 to 0.60 is accepted",
+            "It comes out 1.7929 mm, half the pitch is 3.1416 mm. Measure the wires again (4.300 mm is written), and the size over "
+            "them.",
+            "wire: 3.40, uncertainty: 6 um}",
+        ),
+    ),
     ("MESH-008", "teeth far narrower than such a wheel has"): (
         Slip(
             ROTATOR,
