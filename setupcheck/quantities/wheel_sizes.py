@@ -329,7 +329,7 @@ def high(arcs: tuple[float, float]) -> float:
     return arcs[1]
 
 
-def interference(floor: Floor, arcs: tuple[float, float]) -> str | None:
+def interference(floor: Floor, arcs: tuple[float, float], of: Wheel) -> str | None:
     """A backlash whose lowest end is below zero, as the interference it is; None above zero. Source: mesh.arcs."""
     if arcs[0] >= 0.0:
         return None
@@ -337,9 +337,9 @@ def interference(floor: Floor, arcs: tuple[float, float]) -> str | None:
     least, most = (show(abs(arc), unit, digits) for arc in arcs)
     if arcs[1] < 0.0:
         return f"{most} to {least} of interference along the reference circle: no backlash anywhere, the worm does not go in"
-    return (
-        f"{least} of interference to {most} of backlash along the reference circle: where it is least, the worm binds"
-    )
+    wheel, worm = at_wheel(arcs[1], of), at_worm(arcs[1], of)
+    angles = f"{show(wheel or 0.0, 'arcsec', 0)} at the wheel, {show(worm or 0.0, 'deg', 2)} of the worm"
+    return f"{least} of interference to {most} of backlash along the reference circle ({angles}): at its least the worm binds"
 
 
 def at_wheel(arc: float, of: Wheel) -> float | None:
@@ -411,7 +411,7 @@ WHEEL = (
         "",
         0,
         interference,
-        {**_FLOOR, "arcs": "mesh.arcs"},
+        {**_FLOOR, **_OF, "arcs": "mesh.arcs"},
         "a backlash below zero, as the interference it is",
         "stack",
     ),

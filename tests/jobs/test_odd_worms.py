@@ -132,7 +132,8 @@ def test_a_thickness_measured_further_out_is_told_at_the_reference_diameter_even
     [
         (
             "{measured: 2.350 mm, uncertainty: 4 um}",
-            "backlash: 29.1 um of interference to 76.5 um of backlash along the reference circle: where it is least, the worm binds",
+            'backlash: 29.1 um of interference to 76.5 um of backlash along the reference circle (292" at the wheel, 5.85 deg of '
+            "the worm): at its least the worm binds",  # 76.5 um over 54 mm, and over 0.75 mm
         ),
         (
             "{measured: 2.310 mm, uncertainty: 4 um, at: 25}",
