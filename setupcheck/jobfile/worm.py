@@ -28,6 +28,24 @@ from setupcheck.jobfile.types import (
 )
 
 
+def _diametral_pitch(given: object, info: ValidationInfo) -> float:
+    if isinstance(given, dict):
+        raise ValueError(
+            "a diametral pitch is a plain number, without a unit. Write it as in diametral_pitch: 16; "
+            "what was measured from thread to thread is the axial_pitch"
+        )
+    return _ratio(given, info)
+
+
+def _quotient(given: object, info: ValidationInfo) -> float:
+    if isinstance(given, dict):
+        raise ValueError(
+            "a quotient is a plain number, without a unit. Write it as in quotient: 12; "
+            "what was measured is the reference_diameter"
+        )
+    return _ratio(given, info)
+
+
 def _ratio(given: object, info: ValidationInfo) -> float:
     value = notation.number(scalar(given))
     if not 0.0 < value <= LARGEST_RATIO:
@@ -38,8 +56,9 @@ def _ratio(given: object, info: ValidationInfo) -> float:
 
 
 LARGEST_RATIO = 1000.0  # quotients lie near 10, diametral pitches below 200; our screening choice
-Ratio = Annotated[float, Read(_ratio)]
-"""A plain number above zero, without a unit."""
+DiametralPitch = Annotated[float, Read(_diametral_pitch)]
+Quotient = Annotated[float, Read(_quotient)]
+"""Plain numbers above zero, without a unit."""
 
 
 class Thickness(Dimension):
@@ -95,10 +114,10 @@ class Worm(Shop):
     hand: Literal["right", "left"] | None = None
     axial_module: Size | None = None
     normal_module: Size | None = None
-    diametral_pitch: Ratio | None = None
+    diametral_pitch: DiametralPitch | None = None
     axial_pitch: Travel | None = None
     lead: Travel | None = None
-    quotient: Ratio | None = None
+    quotient: Quotient | None = None
     reference_diameter: Size | None = None
     tip_diameter: Size | None = None
     pressure_angle: Angle | None = None

@@ -96,9 +96,12 @@ def shape(cut: WheelCut) -> Shape:
             gap_arc=d.thread,
             oversize=over,
         )
-        return Shape(cut, fly.crowning(plunge), fly.twist(plunge))
+        made = Shape(cut, fly.crowning(plunge), fly.twist(plunge))
     except ValueError as why:
         raise OutOfRange(str(why)) from None
+    if made.twist < 0.0:  # the second order says nothing of such a flank
+        raise OutOfRange("the thread is too thick for this wheel: its flank has no twist that could be computed")
+    return made
 
 
 def ridge_reach(shape: Shape) -> float | None:
@@ -131,13 +134,16 @@ def contact_area(shape: Shape, half_face: float, film: float) -> float | None:
     if shape.crowning <= 0.0:
         return None
     d = shape.cut.drive
-    return fly.contact_share(
-        film,
-        crowning=shape.crowning,
-        pressure_angle=d.pressure_angle,
-        lead_angle=d.lead_angle,
-        face_width=2.0 * half_face,
-    )
+    try:
+        return fly.contact_share(
+            film,
+            crowning=shape.crowning,
+            pressure_angle=d.pressure_angle,
+            lead_angle=d.lead_angle,
+            face_width=2.0 * half_face,
+        )
+    except ValueError as why:
+        raise OutOfRange(str(why)) from None
 
 
 def contact_length(shape: Shape, half_face: float, film: float) -> float | None:

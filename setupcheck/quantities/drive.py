@@ -11,7 +11,7 @@ from setupcheck.quantities.shop import Floor
 from setupcheck.quantities.thread import Thread, not_straight, thread
 from setupcheck.quantities.worm_sizes import settled, toothing
 from setupcheck.record import record
-from setupcheck.worm.geometry import lead_angle
+from setupcheck.worm.geometry import lead_angle, steep_enough
 
 
 @record
@@ -66,6 +66,7 @@ def drive(floor: Floor) -> Drive | Open | None:
     starts, module, diameter, distance = found
     try:
         lead = lead_angle(starts=round(starts), axial_module=module, diameter=diameter)
+        steep_enough(pressure_angle=worm.pressure_angle)
     except ValueError as why:
         return Open(because=str(why))
     bent = not_straight(floor, worm)

@@ -90,7 +90,7 @@ def _teeth(floor: Floor, stack: Stack) -> Built | Open:
         )
     flank = what not in ("gap-centre-pitch",) and g.kind == "teeth"
     if flank and pattern.pressure_angle is None:
-        return Open((f"parts.{g.part}.surfaces.{g.name}.pressure_angle",))
+        return Open((_angle_of(floor, g),))
     factor = {"index-range": 1.0 / pattern.radius, "index-within": 0.5 / pattern.radius}.get(what, 1.0)
     if what == "on-workpiece":
         if stack.require.on_diameter is None:
@@ -109,6 +109,16 @@ def _teeth(floor: Floor, stack: Stack) -> Built | Open:
         oblique=oblique,
     )
     return Built(figure, second_order(lean=g.lean - r.lean, lever=abs(g.z - r.z)))
+
+
+def _angle_of(floor: Floor, g: State) -> str:
+    """Key of the pressure angle that is missing: the worm's where these are the teeth of its wheel, else their own."""
+    mesh, worm = floor.loaded.job.mesh, floor.loaded.job.worm
+    if mesh is not None and worm is not None:
+        wheel = floor.loaded.ref(mesh.wheel)
+        if (wheel.part, wheel.surface) == (g.part, g.name):
+            return "worm.pressure_angle"
+    return f"parts.{g.part}.surfaces.{g.name}.pressure_angle"
 
 
 def _oblique(floor: Floor, g: State, r: State) -> Account | Open:
@@ -135,7 +145,7 @@ def _backlash_swing(floor: Floor, stack: Stack) -> Built | Open:
         return found
     g, r = found
     if g.pattern is None or g.pattern.pressure_angle is None:
-        return Open((f"parts.{g.part}.surfaces.{g.name}.pressure_angle",))
+        return Open((_angle_of(floor, g),))
     offset = g.offset - r.axis_at(g.z)
     swing = teeth.backlash_swing(1.0, g.pattern.pressure_angle)  # for each mm of eccentricity
     figure: Figure = figures.Vector((offset,), swing)

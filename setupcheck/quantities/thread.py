@@ -154,6 +154,29 @@ def thickness(found: Thread) -> float:
     return found.middle
 
 
+def thickness_share(found: Thread | None, pitch: float | None) -> float | None:
+    """Thickness at the reference diameter over the axial pitch, about a half; None while one of them is not known.
+
+    Source: arithmetic.
+    """
+    return found.middle / pitch if found is not None and pitch is not None else None
+
+
+def share_advice(floor: Floor, worm: Worm, found: Thread, pitch: float) -> str:
+    """What a thread far from half the pitch most likely comes from, in this job's numbers. Source: the usual slips."""
+    unit, digits = ("in", 5) if floor.loaded.job.units == "in" else ("mm", 4)
+    both = f"It comes out {show(found.middle, unit, digits)}, half the pitch is {show(pitch / 2.0, unit, digits)}."
+    if found.path == "worm.over_wires" and worm.over_wires is not None:
+        wire = show(worm.over_wires.wire, unit, digits - 1)
+        return f"{both} Measure the wires again ({wire} is written), and the size over them."
+    at = worm.thread_thickness.at if worm.thread_thickness is not None else None
+    if at is not None:
+        return (
+            f"{both} Measure it again, and the diameter it was measured at ({show(at, unit, digits - 1)} is written)."
+        )
+    return f"{both} Measure it again, along the axis at the reference diameter, and check the pitch."
+
+
 def thickness_miss(floor: Floor, worm: Worm) -> str | None:
     """Two measured thicknesses that contradict each other, in words; None where they agree or only one is known.
 
@@ -243,6 +266,24 @@ THREAD = (
     _row("thread", "", 0, thread, _FLOOR, "the thread as it is best known"),
     _row(
         "thickness", "mm", 4, thickness, {"found": "worm.thread"}, "thickness of the thread at the reference diameter"
+    ),
+    Quantity(
+        "worm.thickness_share",
+        "worm",
+        "1",
+        2,
+        thickness_share,
+        {"found": "settled worm.thread", "pitch": "settled worm.axial_pitch"},
+        "thickness of the thread over the axial pitch",
+        {"found": None, "pitch": None},
+    ),
+    _row(
+        "share_advice",
+        "",
+        0,
+        share_advice,
+        {**_FOUND, "pitch": "worm.axial_pitch"},
+        "what a thread far from half the pitch may come from",
     ),
     _row("thickness_miss", "", 0, thickness_miss, _WORM, "measured thicknesses that contradict each other"),
     _row("best_wire", "mm", 3, best_wire, _FOUND, "wire that touches at the reference diameter"),

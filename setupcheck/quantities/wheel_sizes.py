@@ -123,14 +123,17 @@ def width_advice(width: float, usual: float, floor: Floor) -> str:
 
 
 def reach(floor: Floor, of: Wheel, width: float) -> float | Open:
-    """How far along the worm its thread touches the teeth [mm]. Source: worm.geometry.contact_reach."""
+    """How far along the worm its thread touches the teeth [mm].
+
+    Raises: OutOfRange where it touches none, as with a module that is not the wheel's.  Source: worm.geometry.contact_reach.
+    """
     worm = floor.loaded.job.worm
     assert worm is not None
     missing = tuple(f"worm.{key}" for key in ("tip_diameter", "pressure_angle") if getattr(worm, key) is None)
     if worm.tip_diameter is None or worm.pressure_angle is None:
         return Open(missing)
     try:
-        return geometry.contact_reach(
+        found = geometry.contact_reach(
             starts=of.starts,
             axial_module=of.module,
             pitch_diameter=of.pitch_diameter,
@@ -143,6 +146,9 @@ def reach(floor: Floor, of: Wheel, width: float) -> float | Open:
         )
     except ValueError as why:
         raise OutOfRange(str(why)) from None
+    if found <= 0.0:
+        raise OutOfRange("a worm of these sizes touches nothing of the wheel's teeth")
+    return found
 
 
 def _rim(floor: Floor) -> float | None:
@@ -323,14 +329,30 @@ def high(arcs: tuple[float, float]) -> float:
     return arcs[1]
 
 
-def at_wheel(arc: float, of: Wheel) -> float:
-    """Backlash as an angle of the wheel [rad]: j/r2. Source: geometry."""
-    return arc / (of.diameter / 2.0)
+def interference(floor: Floor, arcs: tuple[float, float], of: Wheel) -> str | None:
+    """A backlash whose lowest end is below zero, as the interference it is; None above zero. Source: mesh.arcs."""
+    if arcs[0] >= 0.0:
+        return None
+    unit, digits = ("thou", 2) if floor.loaded.job.units == "in" else ("um", 1)
+    least, most = (show(abs(arc), unit, digits) for arc in arcs)
+    if arcs[1] < 0.0:
+        return f"{most} to {least} of interference along the reference circle: no backlash anywhere, the worm does not go in"
+    wheel, worm = at_wheel(arcs[1], of), at_worm(arcs[1], of)
+    angles = f"{show(wheel or 0.0, 'arcsec', 0)} at the wheel, {show(worm or 0.0, 'deg', 2)} of the worm"
+    return f"{least} of interference to {most} of backlash along the reference circle ({angles}): at its least the worm binds"
 
 
-def at_worm(arc: float, of: Wheel) -> float:
-    """Backlash as a turn of the worm and its handwheel or crank [rad]: j/p, p = z1 m/2. Source: geometry of the screw."""
-    return arc / (of.starts * of.module / 2.0)
+def at_wheel(arc: float, of: Wheel) -> float | None:
+    """Backlash as an angle of the wheel [rad]: j/r2; None for an interference, which is no turn. Source: geometry."""
+    return arc / (of.diameter / 2.0) if arc >= 0.0 else None
+
+
+def at_worm(arc: float, of: Wheel) -> float | None:
+    """Backlash as a turn of the worm and its handwheel or crank [rad]: j/p, p = z1 m/2; None for an interference.
+
+    Source: geometry of the screw.
+    """
+    return arc / (of.starts * of.module / 2.0) if arc >= 0.0 else None
 
 
 _FLOOR = {"floor": "route.floor"}
@@ -384,6 +406,15 @@ WHEEL = (
     ),
     _row("arc_low", "um", 1, low, {"arcs": "mesh.arcs"}, "lowest backlash along the reference circle", "stack"),
     _row("arc_high", "um", 1, high, {"arcs": "mesh.arcs"}, "highest backlash along the reference circle", "stack"),
+    _row(
+        "interference",
+        "",
+        0,
+        interference,
+        {**_FLOOR, **_OF, "arcs": "mesh.arcs"},
+        "a backlash below zero, as the interference it is",
+        "stack",
+    ),
     _row("wheel_low", "arcsec", 0, at_wheel, {"arc": "mesh.arc_low", **_OF}, "lowest backlash at the wheel", "stack"),
     _row(
         "wheel_high", "arcsec", 0, at_wheel, {"arc": "mesh.arc_high", **_OF}, "highest backlash at the wheel", "stack"

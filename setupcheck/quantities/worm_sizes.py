@@ -30,6 +30,8 @@ PATHS = {
     "shift": "mesh.shift",
 }
 """What to fill for a size that is no key of the worm itself."""
+KEYS_OF_WHEEL = {"teeth": "the wheel's count", "wheel_diameter": "the wheel's on_circle"}
+"""How a message calls a size that is a key of the wheel."""
 MOST_STARTS = 12
 """Starts that the job file takes."""
 
@@ -213,8 +215,8 @@ def departure(floor: Floor, worm: Worm, low: float) -> float | Open | None:
 
 
 def told(floor: Floor, name: str, value: float) -> str:
-    """A size by its key with its unit, as messages write it: `axial_module 1.5 mm`, `quotient 16`."""
-    return f"{name} {_shown(floor, name, value)}"
+    """A size by its key with its unit, as messages write it: `axial_module 1.5 mm`, `quotient 16`, `the wheel's count 72`."""
+    return f"{KEYS_OF_WHEEL.get(name, name)} {_shown(floor, name, value)}"
 
 
 def _shown(floor: Floor, name: str, value: float) -> str:
@@ -226,18 +228,47 @@ def _shown(floor: Floor, name: str, value: float) -> str:
 def contradictions(floor: Floor) -> tuple[Disagreement, ...]:
     """Where the worm's own sizes contradict each other. Wheel and housing have rules of their own, MESH-001 and MESH-002.
 
-    Source: worm.closing.
+    A worm that states no module has it from the wheel's circle, where MESH-001 has nothing to compare: a pitch or a lead
+    measured on that worm is held against the circle here.  Source: worm.closing.
     """
     found = sizes(floor)
+    if found is None:
+        return ()
     away = {"wheel_diameter", "centre_distance"}
-    return tuple(d for d in found.disagreements if not d.about & away) if found is not None else ()
+    if "wheel_diameter" in found.origins.get("axial_module", ()):
+        away = {"centre_distance"}
+    return tuple(d for d in found.disagreements if not d.about & away)
 
 
 def agree(floor: Floor, thickness_miss: str | None) -> str:
     """agree, or which sizes of the worm cannot be true together and by how much. Source: worm.closing."""
     words = [_against(floor, one) for one in contradictions(floor)]
-    words += [thickness_miss] if thickness_miss else []
+    words += [said for said in (lead_miss(floor), thickness_miss) if said]
     return "; ".join(words) if words else "agree"
+
+
+def lead_miss(floor: Floor) -> str | None:
+    """A lead from which the starts would follow, but which is no whole multiple of the axial pitch, in words; else None.
+
+    Allowed is what two sizes may differ by that were rounded apart, and what was measured on top of it, as for every other
+    contradiction.  Source: p_z = z1 p_x; worm.closing.
+    """
+    found, worm = sizes(floor), floor.loaded.job.worm
+    if found is None or worm is None or worm.lead is None or worm.starts is not None:
+        return None
+    rests_on = found.origins.get("axial_pitch", frozenset(("lead",)))
+    if rests_on & {"lead", "starts"}:  # the pitch follows from the lead itself
+        return None
+    lead, pitch = worm.lead.value, found.values["axial_pitch"]
+    whole = max(round(lead / pitch), 1)
+    bands = {name: _band(given) for name, given in _travels(worm)}
+    allowed = SAME + bands["lead"] + (bands.get("axial_pitch", 0.0) if "axial_pitch" in rests_on else 0.0)
+    if abs(lead - whole * pitch) <= allowed * max(lead, whole * pitch):
+        return None
+    return (
+        f"{told(floor, 'lead', lead)} is no whole multiple of the axial pitch {_shown(floor, 'axial_pitch', pitch)}, "
+        f"{whole} of it would be {_shown(floor, 'lead', whole * pitch)}"
+    )
 
 
 def _against(floor: Floor, found: Disagreement) -> str:
@@ -252,6 +283,8 @@ def advice(floor: Floor) -> str | None:
     """What the first contradiction most likely comes from; None without one. Source: the usual slips, worm.closing."""
     first = next(iter(contradictions(floor)), None)
     found, worm = sizes(floor), floor.loaded.job.worm
+    if first is None and lead_miss(floor):
+        return "Measure the lead again, or count the threads at the worm's end, write starts and leave out the lead."
     if first is None or found is None or worm is None:
         return None
     if {"lead", "starts"} <= first.about and worm.starts is not None and worm.lead is not None:
@@ -261,8 +294,8 @@ def advice(floor: Floor) -> str | None:
             return said
     pitch, module = worm.diametral_pitch, worm.axial_module
     if pitch is not None and module is not None and abs(pitch - module) <= SAME * module:
-        return f"The diametral_pitch reads like the module in mm. Leave it away: it would be {25.4 / module:.3f}."
-    return f"Measure again, or leave one of them away: by the others {told(floor, first.name, first.value)}."
+        return f"The diametral_pitch reads like the module in mm. Leave it out: it would be {25.4 / module:.3f}."
+    return f"Measure again, or leave one of them out: by the others {told(floor, first.name, first.value)}."
 
 
 def starts_of(pitches: float, starts: int) -> str:

@@ -43,11 +43,8 @@ SENTENCES: Sequence[tuple[str, str, str]] = (
     ("worm", "worm", "quotient {worm.quotient}, usual tip {worm.usual_tip} and root {worm.usual_root}"),
     ("worm", "worm", "its flank stands up to {worm.off_straight} off a straight axial line"),
     ("worm", "worm", "{worm.candidates}"),
-    (
-        "worm",
-        "thread",
-        "{worm.thickness} thick at the reference diameter; over wires of {worm.wire} it measures {worm.over_wires}",
-    ),
+    ("worm", "thread", "{worm.thickness} thick at the reference diameter"),
+    ("worm", "thread", "over wires of {worm.wire} it measures {worm.over_wires}"),
     ("worm", "thread", "best wire {worm.best_wire}"),
     ("worm", "thread", "{worm.which_groove}"),
     (
@@ -76,6 +73,7 @@ SENTENCES: Sequence[tuple[str, str, str]] = (
         "{mesh.arc_low} to {mesh.arc_high} along the reference circle is {mesh.wheel_low} to {mesh.wheel_high} at the wheel and "
         "{mesh.worm_low} to {mesh.worm_high} of the worm",
     ),
+    ("stack", "backlash", "{mesh.interference}"),
 )
 """Kind of thing, what the line is about, and the sentence; it is said where every number in it is known and not zero."""
 

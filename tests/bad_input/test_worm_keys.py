@@ -57,6 +57,18 @@ def says(old: str, new: str) -> list[str]:
         ),
         (
             MODULE,
+            "  diametral_pitch: {measured: 16.0, uncertainty: 0.1}\n",
+            "worm.diametral_pitch | a diametral pitch is a plain number, without a unit. Write it as in diametral_pitch: 16; "
+            "what was measured from thread to thread is the axial_pitch",
+        ),
+        (
+            MODULE,
+            "  quotient: {measured: 16.0}\n",
+            "worm.quotient | a quotient is a plain number, without a unit. Write it as in quotient: 12; "
+            "what was measured is the reference_diameter",
+        ),
+        (
+            MODULE,
             "  quotient: -16\n",
             "worm.quotient | -16 is no quotient and no diametral pitch. Write a number above zero, as in 12",
         ),

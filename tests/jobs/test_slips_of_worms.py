@@ -56,7 +56,7 @@ SLIPS: dict[tuple[str, str], tuple[Slip, Slip]] = {
             "  reference_diameter: 24\n",
             "  reference_diameter: 24\n  quotient: 15\n",
             "quotient 15 is not 16 (axial_module 1.500 mm, reference_diameter 24.000 mm), 1 apart",
-            "Measure again, or leave one of them away: by the others quotient 16.",
+            "Measure again, or leave one of them out: by the others quotient 16.",
             "  reference_diameter: 24\n  quotient: 16\n",
         ),
         Slip(
@@ -64,7 +64,7 @@ SLIPS: dict[tuple[str, str], tuple[Slip, Slip]] = {
             "  reference_diameter: 36\n",
             "  reference_diameter: 36\n  quotient: 20\n",
             "quotient 20 is not 18 (axial_module 2.000 mm, reference_diameter 36.000 mm), 2 apart",
-            "Measure again, or leave one of them away: by the others quotient 18.",
+            "Measure again, or leave one of them out: by the others quotient 18.",
             "  reference_diameter: 36\n  quotient: 18\n",
         ),
     ),
@@ -95,7 +95,7 @@ SLIPS: dict[tuple[str, str], tuple[Slip, Slip]] = {
             "  thread_thickness: {measured: 2.310 mm, uncertainty: 4 um}\n"
             "  over_wires: {measured: 27.380, wire: 2.55, uncertainty: 4 um}\n",
             "thread_thickness gives 2.3100 mm at the reference diameter, over_wires 2.2963 mm, 14 um apart",
-            "Measure the worm again, or leave away what follows from the rest.",
+            "Measure the worm again, or leave out what follows from the rest.",
             "  over_wires: {measured: 27.4176, wire: 2.55, uncertainty: 4 um}\n",
         ),
         Slip(
@@ -103,8 +103,28 @@ SLIPS: dict[tuple[str, str], tuple[Slip, Slip]] = {
             "  end_float: 8 um\n",
             "  end_float: 8 um\n  thread_thickness: {measured: 3.133 mm, uncertainty: 4 um}\n",
             "thread_thickness gives 3.1330 mm at the reference diameter, over_wires 3.0799 mm, 53 um apart",
-            "Measure the worm again, or leave away what follows from the rest.",
+            "Measure the worm again, or leave out what follows from the rest.",
             "  end_float: 8 um\n  thread_thickness: {measured: 3.0800 mm, uncertainty: 4 um}\n",
+        ),
+    ),
+    ("MESH-011", "the wrong wires typed"): (
+        Slip(
+            ROTATOR,
+            "  thread_thickness: {measured: 2.310 mm, uncertainty: 4 um}\n",
+            "  over_wires: {measured: 27.4176, wire: 3.2, uncertainty: 4 um}\n",
+            "the worm's thread is 0.29 of its axial pitch thick, 0.35 to 0.60 is accepted",
+            "It comes out 1.3802 mm, half the pitch is 2.3562 mm. Measure the wires again (3.200 mm is written), and the size over "
+            "them.",
+            "  over_wires: {measured: 27.4176, wire: 2.55, uncertainty: 4 um}\n",
+        ),
+        Slip(
+            SPINDLE,
+            "wire: 3.40, uncertainty: 6 um}",
+            "wire: 4.30, uncertainty: 6 um}",
+            "the worm's thread is 0.29 of its axial pitch thick, 0.35 to 0.60 is accepted",
+            "It comes out 1.7929 mm, half the pitch is 3.1416 mm. Measure the wires again (4.300 mm is written), and the size over "
+            "them.",
+            "wire: 3.40, uncertainty: 6 um}",
         ),
     ),
     ("MESH-008", "teeth far narrower than such a wheel has"): (

@@ -222,6 +222,8 @@ QUANTITIES: Mapping[str, FakeQuantity] = {
         FakeQuantity("mesh.circle_advice", "mesh", "", 0),
         FakeQuantity("mesh.width_share", "mesh", "1", 2),
         FakeQuantity("mesh.width_advice", "mesh", "", 0),
+        FakeQuantity("worm.thickness_share", "worm", "1", 2),
+        FakeQuantity("worm.share_advice", "worm", "", 0),
         FakeQuantity("worm.agree", "worm", "", 0),
         FakeQuantity("worm.advice", "worm", "", 0),
         FakeQuantity("mesh.circle_miss", "mesh", "um", 1),
