@@ -110,6 +110,16 @@ def flash_margin(join: Join, op: int, planned: float) -> float | Open | None:
     return join.heat.flash_point - planned
 
 
+def out_of_oil(join: Join, op: int) -> str | Open | None:
+    """State of a joint whose hub is lifted out of an oil bath, as stated: oil runs into its bore. None for other heat.
+
+    Source: the job file.
+    """
+    if join.by != "shrink" or join.heat is None or join.heat.by != "oil-bath":
+        return None
+    return join.joint if join.joint is not None else Open((f"setups.{op}.join.joint",))
+
+
 def oxygen(join: Join, op: int) -> float | Open | None:
     """Share of oxygen left once all the liquid nitrogen is gas in the closed room; None where none is used.
 
@@ -253,6 +263,7 @@ HEAT_CHECKS = (
         {**_JOIN, **_OP, "planned": "heat.planned_high"},
         "how far the oil bath stays under its flash point",
     ),
+    Quantity("heat.out_of_oil", "join", "", 0, out_of_oil, {**_JOIN, **_OP}, "state of a joint that comes out of oil"),
     Quantity("heat.oxygen", "join", "%", 1, oxygen, {**_JOIN, **_OP}, "oxygen left when the nitrogen is gas"),
     Quantity(
         "heat.carbon_dioxide", "join", "%", 2, dry_ice_gas, {**_JOIN, **_OP}, "carbon dioxide when the dry ice is gas"

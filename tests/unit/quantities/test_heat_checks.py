@@ -158,6 +158,20 @@ def test_an_oil_bath_soaks_faster_than_an_oven_and_an_inch_of_wall_takes_half_an
     assert answer(hot("by: hot-plate"), "heat.soak") is None
 
 
+@pytest.mark.parametrize(
+    ("joint", "source", "verdict"),
+    [("degreased", "oil-bath", "fail"), ("oiled", "oil-bath", "pass"), ("degreased", "oven", None)],
+)
+def test_a_hub_out_of_an_oil_bath_is_not_degreased(joint: str, source: str, verdict: str | None) -> None:
+    one = found(hot(f"by: {source}", ("joint: degreased", f"joint: {joint}")), "HEAT-017")
+    assert verdict == (one.verdict if one is not None else None)
+
+
+def test_an_oil_bath_with_no_word_on_the_joint_is_open() -> None:
+    one = finding(hot("by: oil-bath", ("      joint: degreased\n", "")), "HEAT-017")
+    assert ("open", ("setups.10.join.joint",)) == (one.verdict, one.missing)
+
+
 # -- gas
 
 NITROGEN = "shaft: -196 degC, cold_by: liquid-nitrogen, cold_error: 3 K"
