@@ -194,18 +194,30 @@ def carry_advice(join: Join, op: int, allowed: float, spare: float | None, oven:
     return f"{first}. With the way as it is: {oven}" if oven is not None else f"{first}."
 
 
-def gauge_advice(
-    floor: Floor, join: Join, op: int, gauge: float, go: float, sizes: JointSizes, opens: float | None
-) -> str:
-    """Size of the gauge for the hot bore, and the largest that the smallest bore takes in. Source: quantities.joint_heat.
+def gauge_enters(floor: Floor, gauge: float, sizes: JointSizes, opens: float, go: float) -> float | None:
+    """Largest gauge that the smallest bore takes in at the least planned heat, the way taken off [mm], rounded down.
 
-    gauge  is asked for so that only a joint with one has it
+    None where that is less than the gauge which proves anything: then HEAT-001 speaks of the heat.
+    gauge  is asked for so that only a joint with one has it.  Source: quantities.opening.
     """
+    step = GAUGE_STEP[floor.loaded.job.units]
+    enters = math.floor((sizes.bore_low + opens) / step + 1e-6) * step
+    return enters if enters >= go - 1e-9 else None
+
+
+def gauge_to_try(gauge: float, go: float, enters: float | None) -> float | None:
+    """The stated gauge where it proves the bore and enters it [mm]; None where HEAT-007 or HEAT-018 has it made anew.
+
+    Source: the job file.
+    """
+    return gauge if go - 1e-9 <= gauge and (enters is None or gauge <= enters + 1e-9) else None
+
+
+def gauge_advice(floor: Floor, op: int, go: float, enters: float | None) -> str:
+    """Size of the gauge for the hot bore, and the largest that the smallest bore takes in. Source: quantities.joint_heat."""
     unit, digits = ("in", 4) if floor.loaded.job.units == "in" else ("mm", 3)
     made = f"Make the gauge {show(go, unit, digits)}, the largest journal and the play (setups.{op}.join.heat.gauge)"
-    step = GAUGE_STEP[floor.loaded.job.units]
-    enters = math.floor((sizes.bore_low + opens) / step + 1e-6) * step if opens is not None else 0.0
-    if enters < go:
+    if enters is None:
         return f"{made}."
     return f"{made}; as hot as planned, the smallest bore takes up to {show(enters, unit, digits)}."
 
@@ -232,21 +244,39 @@ HEAT_CHECKS = (
         {"spare": None, "oven": None},
     ),
     Quantity(
+        "heat.gauge_enters",
+        "join",
+        "mm",
+        3,
+        gauge_enters,
+        {
+            "floor": "route.floor",
+            "gauge": "heat.gauge",
+            "sizes": "fit.sizes",
+            "opens": "heat.opens_by_heat",
+            "go": "heat.go_gauge",
+        },
+        "largest gauge that the smallest hot bore takes in",
+    ),
+    Quantity(
+        "heat.gauge_to_try",
+        "join",
+        "mm",
+        3,
+        gauge_to_try,
+        {"gauge": "heat.gauge", "go": "heat.go_gauge", "enters": "settled heat.gauge_enters"},
+        "the stated gauge, where it proves the hot bore and enters it",
+        {"enters": None},
+    ),
+    Quantity(
         "heat.gauge_advice",
         "join",
         "",
         0,
         gauge_advice,
-        {
-            **_HERE,
-            **_OP,
-            "gauge": "heat.gauge",
-            "go": "heat.go_gauge",
-            "sizes": "fit.sizes",
-            "opens": "settled heat.opens_by_heat",
-        },
+        {"floor": "route.floor", **_OP, "go": "heat.go_gauge", "enters": "settled heat.gauge_enters"},
         "size of the gauge for the hot bore, in words",
-        {"opens": None},
+        {"enters": None},
     ),
     Quantity("heat.gauge", "join", "mm", 3, gauge, _JOIN, "gauge that is tried in the hot bore"),
     Quantity("heat.proved", "join", "", 0, proved, {**_HERE, **_OP}, "how the hot hub is proved"),

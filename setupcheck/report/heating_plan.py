@@ -21,7 +21,10 @@ STEPS: tuple[tuple[str, ...], ...] = (
         "{heat.shaft_gain} on its way and comes at {heat.shaft_at}.",
     ),
     ("Let it soak for {heat.soak}, so that it is hot through.",),
-    ("Try a gauge of {heat.go_gauge} in the hot bore; lift the hub only when it enters.",),
+    (
+        "Try the gauge of {heat.gauge_to_try} (at least {heat.go_gauge}) in the hot bore; lift the hub only when it enters.",
+        "Try a gauge of {heat.go_gauge} in the hot bore; lift the hub only when it enters.",
+    ),
     (
         "Carried as planned, the hub still has {heat.at_shaft} at the shaft. In still air the wanted play lasts "
         "{heat.carry_allowed}, and after {heat.carry_until_bite} the tightest pair has none.",

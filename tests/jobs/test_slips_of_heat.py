@@ -73,6 +73,11 @@ SLIPS: Mapping[str, tuple[str, set[str], Mapping[str, tuple[Change, ...]]]] = {
         set(),
         {ROTATOR: (("gauge: 32.07", "gauge: 32.033"),), COUPLING: (("gauge: 80.16", "gauge: 80.078"),)},
     ),
+    "gauge larger than the hot bore": (
+        "HEAT-018",
+        set(),
+        {ROTATOR: (("gauge: 32.07", "gauge: 32.12"),), COUPLING: (("gauge: 80.16", "gauge: 80.4"),)},
+    ),
     "carried for minutes": (
         "HEAT-006",
         {"HEAT-001"},

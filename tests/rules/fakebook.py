@@ -193,6 +193,7 @@ QUANTITIES: Mapping[str, FakeQuantity] = {
         FakeQuantity("heat.carry_advice", "join", "", 0),
         FakeQuantity("heat.gauge", "join", "mm", 3),
         FakeQuantity("heat.go_gauge", "join", "mm", 3),
+        FakeQuantity("heat.gauge_enters", "join", "mm", 3),
         FakeQuantity("heat.gauge_advice", "join", "", 0),
         FakeQuantity("heat.proved", "join", "", 0),
         FakeQuantity("heat.flame", "join", "", 0),

@@ -4,8 +4,9 @@ from __future__ import annotations
 
 import pytest
 
+from setupcheck.report.heating_plan import heating_plans
 from setupcheck.rulebook import Finding
-from tests.unit.report.sample import PLATE
+from tests.unit.report.sample import PLATE, flat
 
 from .joint_text import answer, changed, finding, number, reviewed
 
@@ -72,6 +73,34 @@ def test_a_hot_hub_is_proved_by_gauge_probe_or_crayon(said: str, verdict: str, m
 
 def test_no_gauge_is_no_gauge_that_is_too_small() -> None:
     assert found(changed(), "HEAT-007") is None
+
+
+def test_a_gauge_that_the_smallest_bore_does_not_take_fails_and_the_printed_one_does() -> None:
+    assert found(changed(), "HEAT-018") is None
+    one = finding(hot("gauge: 60.2"), "HEAT-018")
+    assert "fail" == one.verdict
+    # 60.000 bore; 185 degC less the way, the low end of tin bronze's expansion
+    at = number(hot("gauge: 60.2"), "heat.at_shaft")
+    grown = number(hot("gauge: 60.2"), "heat.opens_by_heat")
+    assert 180.0 < at < 185.0
+    assert one.limit == pytest.approx(60.0 + grown, abs=0.001)
+    shown = f"{one.limit:.3f}"
+    assert f"takes up to {shown} mm" in one.remedy
+    assert "pass" == finding(hot(f"gauge: {shown}"), "HEAT-018").verdict
+    assert "fail" == finding(hot(f"gauge: {one.limit + 0.001:.3f}"), "HEAT-018").verdict
+
+
+def test_a_heat_that_is_too_low_is_no_fault_of_the_gauge() -> None:
+    text = heat("hub: 120 degC, oven_error: 5 degC, carry: 10 s, gauge: 60.12")
+    assert "fail" == finding(text, "HEAT-001").verdict
+    assert found(text, "HEAT-018") is None
+
+
+def test_the_plan_speaks_of_the_stated_gauge_where_it_does() -> None:
+    plan = flat("\n".join(heating_plans(reviewed(hot("gauge: 60.13")))))
+    assert "Try the gauge of 60.130 mm (at least 60.120 mm) in the hot bore" in plan
+    for said in ("gauge: 60.2", "gauge: 60.1", "read_by: crayon"):
+        assert "Try a gauge of 60.120 mm in the hot bore" in flat("\n".join(heating_plans(reviewed(hot(said)))))
 
 
 # -- flame
