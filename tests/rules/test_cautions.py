@@ -58,6 +58,11 @@ def test_a_fact_that_is_not_stated_is_no_reason_to_keep_quiet(tmp_path: Path) ->
     ]
 
 
+def test_a_material_that_is_named_and_not_known_is_not_called_unstated(tmp_path: Path) -> None:
+    done = run(tmp_path, {}, {"join.by": Unknown("parts.wheel.material", "sintered iron")})
+    assert ["not known of sintered iron: parts.wheel.material"] == [c.because for c in done.cautions]
+
+
 def test_a_certain_trigger_takes_the_place_of_a_doubtful_one_at_the_same_operation(tmp_path: Path) -> None:
     kinds: dict[str, Fact] = {"10/centre": Unknown("setups.10.machine"), "10/square": "lathe"}
     fake = FakeBook(QUANTITIES, HOLDS, {})
@@ -188,6 +193,9 @@ OPERATIONS = {
     "shrinking a hub of beryllium copper on": (
         {"setup.kind": "join", "join.by": "shrink", "heat.by": "oven", "part.beryllium": True},
         ["beryllium-copper-heat", "glove-heat-rating", "hot-part", "shrink-seized-halfway"]),
+    "shrinking a sintered hub on": (
+        {"setup.kind": "join", "join.by": "shrink", "heat.by": "oven", "hub.porous": True},
+        ["glove-heat-rating", "sintered-oil-heat", "hot-part", "shrink-seized-halfway"]),
     "shrinking an iron hub on from an oil bath": (
         {"setup.kind": "join", "join.by": "shrink", "heat.by": "oil-bath", "hub.brittle": True},
         ["glove-heat-rating", "oil-bath-flash-point", "oil-bath-water", "hub-burst", "hot-part",

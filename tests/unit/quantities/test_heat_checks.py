@@ -103,6 +103,13 @@ def test_the_plan_speaks_of_the_stated_gauge_where_it_does() -> None:
         assert "Try a gauge of 60.120 mm in the hot bore" in flat("\n".join(heating_plans(reviewed(hot(said)))))
 
 
+@pytest.mark.parametrize("part", ["CuSn12-C", "42CrMo4"])
+def test_no_heat_is_planned_for_a_joint_with_pores(part: str) -> None:
+    assert list(heating_plans(reviewed(hot("by: oven"))))
+    porous = f"material: {part}\n    properties: {{porous: true}}"
+    assert [] == list(heating_plans(reviewed(hot("by: oven", (f"material: {part}", porous)))))
+
+
 # -- flame
 
 
