@@ -14,7 +14,7 @@ from pydantic import BaseModel, TypeAdapter, ValidationError
 from pydantic_core import ErrorDetails
 
 from setupcheck.errors import JobError, Problem
-from setupcheck.jobfile import cuts, directions, gauges, gearing, given, joints, names, reach, sense, shapes
+from setupcheck.jobfile import cuts, directions, gauges, gearing, given, joints, names, reach, sense, shapes, warmth
 from setupcheck.jobfile.drawing import drawing_of
 from setupcheck.jobfile.examples import ENTRIES, SHAPES, TO_BEGIN
 from setupcheck.jobfile.models import Require, Surface
@@ -155,6 +155,7 @@ def _contradictions(data: Mapping[str, Data], job: Job | None) -> Iterator[names
         given.repeated,
         gauges.misplaced,
         gearing.unlikely,
+        warmth.unlikely,
     ):
         yield from check(drawing)
 
