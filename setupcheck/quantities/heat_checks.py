@@ -19,6 +19,9 @@ LEAST_OXYGEN = 0.195
 """Share of oxygen below which air counts as deficient. Source: OSHA letter (excerpt opened)."""
 LONG_CARBON_DIOXIDE, SHORT_CARBON_DIOXIDE = 0.005, 0.03
 """Shares of carbon dioxide for eight hours and for 15 minutes. Source: NIOSH pocket guide with OSHA's limit (excerpt opened)."""
+WITH_FILLING = 1.1
+"""Liquid nitrogen that boils off over what is stated: a tenth goes as warm vessels are filled. Source: a data sheet on liquid
+nitrogen (excerpt opened)."""
 _TENTH = 0.1
 LITRE = 1e-3
 """m3. The file's amounts of liquid are kept in m3."""
@@ -121,12 +124,12 @@ def out_of_oil(join: Join, op: int) -> str | Open | None:
 
 
 def oxygen(join: Join, op: int) -> float | Open | None:
-    """Share of oxygen left once all the liquid nitrogen is gas in the closed room; None where none is used.
+    """Share of oxygen left once all the liquid nitrogen, and a tenth for filling, is gas in the closed room; None without.
 
-    Source: physics.cold_gas.
+    Source: physics.cold_gas; WITH_FILLING.
     """
     found = _boils(join, op, "liquid-nitrogen")
-    return found if not isinstance(found, tuple) else oxygen_left(found[0], litres=found[1] / LITRE)
+    return found if not isinstance(found, tuple) else oxygen_left(found[0], litres=WITH_FILLING * found[1] / LITRE)
 
 
 def dry_ice_gas(join: Join, op: int) -> float | Open | None:
@@ -164,7 +167,7 @@ def gas_advice(join: Join, op: int) -> str | None:
         return None
     volume, amount = heat.room_volume, heat.coolant.value
     if heat.cold_by == "liquid-nitrogen":
-        most, amount, unit, stay = litres_at_most(volume, oxygen=LEAST_OXYGEN), amount / LITRE, "l", ""
+        most, amount, unit, stay = (litres_at_most(volume, oxygen=LEAST_OXYGEN) / WITH_FILLING, amount / LITRE, "l", "")
     else:
         most, unit = dry_ice_at_most(volume, share=LONG_CARBON_DIOXIDE), "kg"
         brief = dry_ice_at_most(volume, share=SHORT_CARBON_DIOXIDE)

@@ -117,6 +117,7 @@ SET_OFF: Mapping[str, tuple[int, Changes, Changes]] = {
     "liquid-air-and-oil": (20, (cold("liquid-nitrogen"),), (cold("dry-ice"),)),
     "dry-ice-room": (20, (cold("dry-ice"),), (cold("freezer"),)),
     "liquid-nitrogen-room": (20, (cold("liquid-nitrogen"),), (cold("dry-ice"),)),
+    "nitrogen-bath-spits": (20, (cold("liquid-nitrogen"),), (cold("dry-ice"),)),
     "cold-part-and-frost": (20, (cold("freezer"),), ()),
     "cold-brittle-steel": (20, (cold("dry-ice"),), (cold("dry-ice"), BRONZE_SHAFT)),
     "hub-burst": (20, (IRON,), (HARDENED_SHAFT,)),

@@ -208,8 +208,8 @@ OPERATIONS = {
     "shrinking on from liquid nitrogen": (
         {"setup.kind": "join", "join.by": "shrink", "heat.by": "oven", "heat.cold_by": "liquid-nitrogen",
          "heat.deep_cold": True, "shaft.material_family": "steel"},
-        ["glove-heat-rating", "liquid-nitrogen-room", "cold-brittle-steel", "hot-part", "cold-part-and-frost",
-         "liquid-air-and-oil", "shrink-seized-halfway"]),
+        ["glove-heat-rating", "liquid-nitrogen-room", "cold-brittle-steel", "hot-part", "nitrogen-bath-spits",
+         "cold-part-and-frost", "liquid-air-and-oil", "shrink-seized-halfway"]),
     "shrinking a blind hub onto a shaft from dry ice, by cold alone": (
         {"setup.kind": "join", "join.by": "shrink", "heat.by": None, "heat.hot": False, "heat.cold_by": "dry-ice",
          "hub.may_trap": True, "join.may_trap": True, "heat.deep_cold": True, "shaft.material_family": "steel"},

@@ -215,8 +215,9 @@ ICE = "shaft: -75 degC, cold_by: dry-ice, cold_error: 3 K"
 
 
 @pytest.mark.parametrize(
-    ("room", "litres", "verdict"), [("40 m3", "3.8 l", "pass"), ("40 m3", "3.9 l", "fail"), ("12 m3", "5 l", "fail"),
-                                    ("1413 ft3", "3.8 l", "pass")],
+    ("room", "litres", "verdict"), [("40 m3", "3.4 l", "pass"), ("40 m3", "3.5 l", "fail"), ("12 m3", "5 l", "fail"),
+                                    ("1413 ft3", "3.4 l", "pass"), ("11.5 m3", "1 l", "pass"), ("11.4 m3", "1 l", "fail"),
+                                    ("58 m3", "5 l", "pass"), ("57 m3", "5 l", "fail")],
 )  # fmt: skip
 def test_nitrogen_leaves_enough_oxygen_or_not(room: str, litres: str, verdict: str) -> None:
     assert verdict == finding(hot(f"{NITROGEN}, room_volume: {room}, coolant: {litres}"), "HEAT-012").verdict
