@@ -7,6 +7,7 @@ import math
 from setupcheck.jobfile.setups import Join
 from setupcheck.notation import show
 from setupcheck.physics.cold_gas import carbon_dioxide, dry_ice_at_most, litres_at_most, oxygen_left
+from setupcheck.quantities.advice import WAY_TOO_LONG
 from setupcheck.quantities.book import Open, Quantity
 from setupcheck.quantities.contents import LOW_TEMPER, breaks
 from setupcheck.quantities.joining import JointSizes
@@ -20,8 +21,8 @@ LEAST_OXYGEN = 0.195
 LONG_CARBON_DIOXIDE, SHORT_CARBON_DIOXIDE = 0.005, 0.03
 """Shares of carbon dioxide for eight hours and for 15 minutes. Source: NIOSH pocket guide with OSHA's limit (excerpt opened)."""
 WITH_FILLING = 1.1
-"""Liquid nitrogen that boils off over what is stated: a tenth goes as warm vessels are filled. Source: a data sheet on liquid
-nitrogen (excerpt opened)."""
+"""Liquid nitrogen that boils off over what is stated: a tenth goes as warm vessels are filled. Source: our screening choice,
+as a sheet on liquid nitrogen has it (from memory)."""
 _TENTH = 0.1
 LITRE = 1e-3
 """m3. The file's amounts of liquid are kept in m3."""
@@ -194,7 +195,9 @@ def carry_advice(join: Join, op: int, allowed: float, spare: float | None, oven:
         first = (
             f"Bring hub and shaft together within {show(math.floor(spare), 's', 0)} ({path}; {most} at the very most)"
         )
-    return f"{first}. With the way as it is: {oven}" if oven is not None else f"{first}."
+    if oven is None or oven.startswith(WAY_TOO_LONG):  # the first sentence has said it
+        return f"{first}."
+    return f"{first}. With the way as it is: {oven[:1].lower()}{oven[1:]}"
 
 
 def gauge_enters(floor: Floor, gauge: float, sizes: JointSizes, opens: float, go: float) -> float | None:

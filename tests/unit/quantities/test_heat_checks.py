@@ -110,6 +110,43 @@ def test_no_heat_is_planned_for_a_joint_with_pores(part: str) -> None:
     assert [] == list(heating_plans(reviewed(hot("by: oven", (f"material: {part}", porous)))))
 
 
+# -- what the way takes
+
+
+def test_where_the_way_spoils_it_the_advice_names_the_way_and_typed_back_it_does() -> None:
+    low = heat("hub: 120 degC, oven_error: 5 degC, carry: 30 min")
+    assert found(low, "HEAT-006") is None  # too cold from the start
+    remedy = finding(low, "HEAT-001").remedy
+    assert remedy.startswith("The way to the shaft is too long: in 1800 s it takes ")
+    setting, seconds = remedy.split("set to ")[1].split(" degC")[0], remedy.split("within ")[1].split(" s")[0]
+    again = heat(f"hub: {setting} degC, oven_error: 5 degC, carry: {seconds} s")
+    assert {"pass"} == {finding(again, rule).verdict for rule in ("HEAT-001", "HEAT-002", "HEAT-003", "HEAT-006")}
+    assert (
+        "pass"
+        != finding(heat(f"hub: {setting} degC, oven_error: 5 degC, carry: {float(seconds) + 3} s"), "HEAT-003").verdict
+    )
+
+
+def test_with_a_heat_that_was_enough_at_first_the_carry_rule_says_it_once() -> None:
+    remedy = finding(heat("hub: 190 degC, oven_error: 5 degC, carry: 30 min"), "HEAT-006").remedy
+    assert remedy.startswith("Bring hub and shaft together within ")
+    assert "way" not in remedy
+
+
+def test_a_second_sentence_of_the_carry_rule_goes_on_in_small_letters() -> None:
+    remedy = finding(heat("hub: 150 degC, oven_error: 5 degC, carry: 180 s"), "HEAT-006").remedy
+    assert ". With the way as it is: set the heat to " in remedy
+
+
+def test_sizes_that_do_not_belong_together_are_called_so() -> None:
+    # 0.62 mm over 60 mm and the fit
+    text = changed(("seat: {kind: cylinder, diameter: 60 r6", "seat: {kind: cylinder, diameter: 60.6 ±0.02"))
+    assert finding(text, "HEAT-001").remedy == (
+        "The sizes do not belong together: 0.620 mm of interference is more than a hundredth of the diameter. "
+        "Check the sizes and limits of ring.bore and shaft.seat."
+    )
+
+
 # -- flame
 
 
