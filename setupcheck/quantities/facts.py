@@ -9,7 +9,7 @@ from setupcheck.jobfile.setups import Join, Setup
 from setupcheck.quantities.book import Open, Scope
 from setupcheck.quantities.chilling import cold_error
 from setupcheck.quantities.contents import breaks, holds, material_family
-from setupcheck.quantities.joining import heat_error
+from setupcheck.quantities.joining import heat_error, key_of_error
 from setupcheck.quantities.readings import Reading
 from setupcheck.quantities.requirements import Stack, spoken
 from setupcheck.quantities.route import machine_of
@@ -139,7 +139,7 @@ def _above_cap(floor: Floor, join: Join, heat: Heat, path: str) -> Fact:
         return UnknownFact(f"{path}.hub")
     error = heat_error(heat)
     if error is None:
-        return UnknownFact(f"{path}.oven_error")
+        return UnknownFact(f"{path}.{key_of_error(heat)}")
     found = material_of(floor, part)
     if isinstance(found, Open):
         return _unknown_of(floor, part, found)

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import pytest
 
+from setupcheck.quantities.book import Open
 from setupcheck.report.heating_plan import heating_plans
 from setupcheck.rulebook import Finding
 from tests.unit.report.sample import PLATE, flat
@@ -108,6 +109,26 @@ def test_no_heat_is_planned_for_a_joint_with_pores(part: str) -> None:
     assert list(heating_plans(reviewed(hot("by: oven"))))
     porous = f"material: {part}\n    properties: {{porous: true}}"
     assert [] == list(heating_plans(reviewed(hot("by: oven", (f"material: {part}", porous)))))
+
+
+# -- what to fill
+
+
+@pytest.mark.parametrize(
+    ("said", "missing"),
+    [
+        ("heat: {hub: 190 degC, carry: 10 s}", {"by"}),
+        ("heat: {hub: 190 degC, carry: 10 s, by: flame}", {"oven_error"}),  # of no typical error
+        ("heat: {carry: 10 s}", {"hub", "by"}),
+        ("heat: {hub: 190 degC, carry: 10 s, by: oven}", set()),
+        ("heat: {hub: 190 degC, carry: 10 s, read_by: crayon}", set()),
+        ("grips_first: anywhere", {"hub", "by"}),  # no heat at all
+    ],
+)
+def test_a_heat_of_no_source_asks_for_its_source(said: str, missing: set[str]) -> None:
+    found = answer(changed((HEAT, said)), "heat.at_shaft")
+    asked = set(found.missing) if isinstance(found, Open) else set()
+    assert {f"setups.10.join.heat.{key}" for key in missing} == asked
 
 
 # -- what the way takes
