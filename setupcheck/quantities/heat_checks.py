@@ -20,6 +20,8 @@ LEAST_OXYGEN = 0.195
 """Share of oxygen below which air counts as deficient. Source: OSHA letter (excerpt opened)."""
 LONG_CARBON_DIOXIDE, SHORT_CARBON_DIOXIDE = 0.005, 0.03
 """Shares of carbon dioxide for eight hours and for 15 minutes. Source: NIOSH pocket guide with OSHA's limit (excerpt opened)."""
+LEAST_FLASH_MARGIN = 40.0
+"""Kelvin under the flash point that HEAT-011 asks for. Source: the rule book."""
 WITH_FILLING = 1.1
 """Liquid nitrogen that boils off over what is stated: a tenth goes as warm vessels are filled. Source: our screening choice,
 as a sheet on liquid nitrogen has it (from memory)."""
@@ -112,6 +114,19 @@ def flash_margin(join: Join, op: int, planned: float) -> float | Open | None:
     if join.heat.flash_point is None:
         return Open((f"setups.{op}.join.heat.flash_point",))
     return join.heat.flash_point - planned
+
+
+def flash_advice(join: Join, margin: float) -> str | None:
+    """On which side of its flash point the hottest bath is, and the flash point that would do. Source: `flash_margin`."""
+    if join.heat is None or join.heat.flash_point is None or margin >= LEAST_FLASH_MARGIN:
+        return None
+    side = "below" if margin > 0.0 else "above" if margin < 0.0 else "at"
+    by = f"{show(abs(margin), 'K', 0)} " if margin else ""
+    least = math.ceil(join.heat.flash_point + LEAST_FLASH_MARGIN - margin - 1e-9)
+    return (
+        f"At its hottest the bath is {by}{side} the flash point of {show(join.heat.flash_point, 'degC', 0)}. Take an oil that "
+        f"flashes at {least} degC or more by its safety data sheet, heat it less and chill the shaft, or use an oven."
+    )
 
 
 def out_of_oil(join: Join, op: int) -> str | Open | None:
@@ -298,6 +313,15 @@ HEAT_CHECKS = (
         flash_margin,
         {**_JOIN, **_OP, "planned": "heat.planned_high"},
         "how far the oil bath stays under its flash point",
+    ),
+    Quantity(
+        "heat.flash_advice",
+        "join",
+        "",
+        0,
+        flash_advice,
+        {**_JOIN, "margin": "heat.flash_margin"},
+        "flash point that an oil bath needs, in words",
     ),
     Quantity("heat.out_of_oil", "join", "", 0, out_of_oil, {**_JOIN, **_OP}, "state of a joint that comes out of oil"),
     Quantity("heat.oxygen", "join", "%", 1, oxygen, {**_JOIN, **_OP}, "oxygen left when the nitrogen is gas"),

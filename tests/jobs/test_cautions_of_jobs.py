@@ -110,6 +110,7 @@ SET_OFF: Mapping[str, tuple[int, Changes, Changes]] = {
     "oil-bath-flash-point": (20, (OIL,), (PLATE,)),
     "oil-bath-water": (20, (OIL,), (PLATE,)),
     "solvent-before-heat": (20, (DEGREASED,), ()),
+    "cast-iron-heat": (20, (IRON,), (IRON, PRESSED)),
     "sintered-oil-heat": (20, (SINTERED,), (SINTERED, PRESSED)),
     "sealed-cavity-heat": (20, (BLIND,), ()),
     "sealed-cavity-press": (20, (BLIND, PRESSED), (PRESSED,)),

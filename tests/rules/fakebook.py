@@ -201,6 +201,7 @@ QUANTITIES: Mapping[str, FakeQuantity] = {
         FakeQuantity("heat.shaft", "join", "degC", 0),
         FakeQuantity("heat.room", "join", "degC", 0),
         FakeQuantity("heat.flash_margin", "join", "K", 0),
+        FakeQuantity("heat.flash_advice", "join", "", 0),
         FakeQuantity("heat.out_of_oil", "join", "", 0),
         FakeQuantity("heat.oxygen", "join", "%", 1),
         FakeQuantity("heat.carbon_dioxide", "join", "%", 2),

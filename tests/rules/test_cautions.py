@@ -193,6 +193,9 @@ OPERATIONS = {
     "shrinking a hub of beryllium copper on": (
         {"setup.kind": "join", "join.by": "shrink", "heat.by": "oven", "part.beryllium": True},
         ["beryllium-copper-heat", "glove-heat-rating", "hot-part", "shrink-seized-halfway"]),
+    "shrinking a cast-iron hub on": (
+        {"setup.kind": "join", "join.by": "shrink", "heat.by": "oven", "part.material_family": "cast-iron"},
+        ["glove-heat-rating", "hot-part", "cast-iron-heat", "shrink-seized-halfway"]),
     "shrinking a sintered hub on": (
         {"setup.kind": "join", "join.by": "shrink", "heat.by": "oven", "hub.porous": True},
         ["glove-heat-rating", "sintered-oil-heat", "hot-part", "shrink-seized-halfway"]),

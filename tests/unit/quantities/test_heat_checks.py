@@ -225,6 +225,16 @@ def test_the_bath_stays_forty_kelvin_under_its_flash_point_at_its_hottest(flash:
 
 
 @pytest.mark.parametrize(
+    ("flash", "said"),
+    [("234 degC", "39 K below the flash point of 234 degC"), ("195 degC", "at the flash point of 195 degC"),
+     ("185 degC", "10 K above the flash point of 185 degC")],
+)  # fmt: skip
+def test_a_bath_above_its_flash_point_is_said_in_words_with_the_oil_that_does(flash: str, said: str) -> None:
+    remedy = finding(hot(f"by: oil-bath, flash_point: {flash}"), "HEAT-011").remedy
+    assert remedy.startswith(f"At its hottest the bath is {said}. Take an oil that flashes at 235 degC or more ")
+
+
+@pytest.mark.parametrize(
     ("flash", "verdict"),
     [
         ("455 degF", "pass"),  # 374 + 9 degF at its hottest, 72 degF above that
