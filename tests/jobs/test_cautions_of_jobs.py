@@ -174,6 +174,12 @@ def test_a_caution_that_the_job_does_not_settle_is_printed_and_names_the_key(nam
     assert f"{how}: {key}" == asked(changed(TURNED, *without))[name, op]
 
 
+def test_sintered_iron_is_not_asked_about_beryllium_and_bronze() -> None:
+    said = {name for name, _ in asked(changed(TURNED, SINTERED))}
+    assert "sintered-oil-heat" in said
+    assert not said & {"beryllium-copper-heat", "beryllium-copper-cut", "bronze-chips"}
+
+
 def test_plain_turning_of_steel_says_no_more_than_it_did() -> None:
     found = asked(TURNED)
     assert {"chuck-key-and-jaws", "gloves-near-spindle"} == {name for name, op in found if op == 10}
