@@ -85,7 +85,7 @@ def review(job: LoadedJob | str | Path, *, house: str | Path | None = None, on: 
     @cache  # every rule asks for the same few
     def facts(scope: Scope, name: str) -> Fact:
         found = facts_of(floor, scope, name)
-        return Unknown(found.path) if isinstance(found, UnknownFact) else found
+        return Unknown(found.path, found.of) if isinstance(found, UnknownFact) else found
 
     found = evaluate(book_of_rules, book, facts, house=own, waivers=_waivers(loaded), answers=_answers(loaded), on=on)
     results = stack_results(book)

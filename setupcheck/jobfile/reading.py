@@ -14,7 +14,20 @@ from pydantic import BaseModel, TypeAdapter, ValidationError
 from pydantic_core import ErrorDetails
 
 from setupcheck.errors import JobError, Problem
-from setupcheck.jobfile import cuts, directions, gauges, gearing, given, joints, marks, names, reach, sense, shapes
+from setupcheck.jobfile import (
+    cuts,
+    directions,
+    gauges,
+    gearing,
+    given,
+    joints,
+    marks,
+    names,
+    reach,
+    sense,
+    shapes,
+    warmth,
+)
 from setupcheck.jobfile.drawing import drawing_of
 from setupcheck.jobfile.examples import ENTRIES, SHAPES, TO_BEGIN
 from setupcheck.jobfile.models import Require, Surface
@@ -156,6 +169,7 @@ def _contradictions(data: Mapping[str, Data], job: Job | None) -> Iterator[names
         gauges.misplaced,
         gearing.unlikely,
         marks.unlikely,
+        warmth.unlikely,
     ):
         yield from check(drawing)
 

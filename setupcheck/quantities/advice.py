@@ -8,12 +8,12 @@ from setupcheck.division.methods import circles_that_fit
 from setupcheck.jobfile.setups import Join, Setup
 from setupcheck.jobfile.worm import Mesh
 from setupcheck.notation import show, show_angle
-from setupcheck.physics.heating import planned_heat
+from setupcheck.physics.heating import carry_time, planned_heat
 from setupcheck.physics.materials import expansion_for
 from setupcheck.quantities.book import Open, Quantity
 from setupcheck.quantities.drive import WheelCut, middle
 from setupcheck.quantities.joining import heat_error
-from setupcheck.quantities.joint_heat import carry_loss, unheated
+from setupcheck.quantities.joint_heat import carry_loss, ring_of, unheated
 from setupcheck.quantities.opening import SPARE, hub_expansion
 from setupcheck.quantities.pairing import Pair
 from setupcheck.quantities.shop import Floor
@@ -26,6 +26,11 @@ SETTLED = 8
 """Rounds until setting and loss agree; each leaves a few hundredths of the error. Source: our choice."""
 CLEARANCE = 0.2
 """Usual clearance under the worm's tip, in modules. Source: common practice; CUTTER-005 takes a little on both sides."""
+ABSURD = 0.01
+"""Interference over the diameter beyond which bore and journal are no pair. Source: our screening choice, some three times the
+tightest fits of ISO 286."""
+WAY_TOO_LONG = "The way to the shaft is too long"
+"""How advice begins that names the carry."""
 LARGEST_SHIFT = 1.0
 """Profile shift [modules] beyond which a miss is rather a wrong number. Source: our screening choice."""
 
@@ -36,6 +41,12 @@ def oven(floor: Floor, join: Join, pair: Pair, most: float, needed: float, cap: 
     What the carry takes is worked out for each setting: a hotter hub loses more.
     """
     heat = join.heat
+    if most > ABSURD * pair.diameter:
+        unit, digits = ("in", 4) if floor.loaded.job.units == "in" else ("mm", 3)
+        return (
+            f"The sizes do not belong together: {show(most, unit, digits)} of interference is more than a hundredth of the "
+            f"diameter. Check the sizes and limits of {join.outer} and {join.inner}."
+        )
     if heat is not None and heat.by_cold_alone(floor.loaded.job.room):
         return _beside_cold(pair, unheated(join, floor.loaded.job.room), most, needed, cap)
     error = heat_error(heat) if heat is not None else None
@@ -64,6 +75,9 @@ def oven(floor: Floor, join: Join, pair: Pair, most: float, needed: float, cap: 
     if fewer >= most:  # nothing would be left of it
         less = f"{chill}, or carry the hub faster"
     if low > high:
+        way = _too_long(floor, join, pair, needed, error[0], float(high))
+        if way is not None:
+            return way
         return (
             f"Heat alone does not do it: it takes {low} degC, and {high} degC is the most this hub may be set to. "
             f"{less[:1].upper()}{less[1:]}."
@@ -76,6 +90,27 @@ def oven(floor: Floor, join: Join, pair: Pair, most: float, needed: float, cap: 
     if heat.hub is not None and high <= heat.hub <= highest:
         return f"The heat stands at its most: {less}."
     return f"Set the heat to {high} degC, the most this material and oven allow, and {less}."
+
+
+def _too_long(floor: Floor, join: Join, pair: Pair, needed: float, error: float, high: float) -> str | None:
+    """In how many seconds a hub that is set to the most it may have would do; None where no way is short enough.
+
+    Down to HEAT-003's kelvin in hand where they are there, else to the bare need; a chilled shaft as warm as it comes now.
+    Source: physics.heating.
+    """
+    assert join.heat is not None and join.heat.carry is not None
+    ring, room = ring_of(pair), floor.loaded.job.room
+    for until in (needed + SPARE, needed):
+        lasts = carry_time(ring, start=high - error, until=until, air=room)
+        if 1.0 <= lasts < join.heat.carry:
+            loss = carry_loss(floor, join, pair, high - error, 0)
+            takes = f"{show(loss, 'K', 0)}" if isinstance(loss, float) else "too much"
+            return (
+                f"{WAY_TOO_LONG}: in {show(join.heat.carry, 's', 0)} it takes {takes} of a hub set to {high:.0f} degC, the "
+                f"most this material and oven allow. Set that and bring hub and shaft together within "
+                f"{show(math.floor(lasts), 's', 0)} (carry)."
+            )
+    return None
 
 
 def _beside_cold(pair: Pair, hub_at: float, most: float, needed: float, cap: float) -> str | None:

@@ -27,7 +27,8 @@ FAMILIES = (
     ),
     (
         "steel",
-        r"(?![0235]\.)\d|.*(steel|stainless|inox)|c[fk]?\d\d?[er]?\b|s\d{3}|g\d{5}|r?st ?\d\d|s\d\dc\b|scm\d|suj\d|sus ?\d"
+        r"(?![0235]\.)\d|.*(steel|stainless|inox|(sinter|porous|powder.?metal)[a-z]*.?iron)"
+        r"|c[fk]?\d\d?[er]?\b|s\d{3}|g\d{5}|r?st ?\d\d|s\d\dc\b|scm\d|suj\d|sus ?\d"
         r"|x\d|v[24]a\b|o1\b|d2\b|h13\b|a2\b|hss\b",
     ),
 )
@@ -133,7 +134,8 @@ def holds(name: str, content: Content) -> bool | None:
     if re.search(_SYMBOLS[content] + r"(?![a-z])", name) or re.match(_BY_NUMBER[content], plain):
         return True
     if family != "copper-alloy":
-        return None if family == "other" else False
+        in_the_mix = content == "lead" and is_porous(name)  # which iron for bearings may have
+        return None if family == "other" or in_the_mix else False
     if plain.startswith("cu"):  # symbols, perhaps typed small
         return True if _SYMBOLS[content].lower() in plain else None if content == "lead" else False
     return False if content == "beryllium" and re.match(r"c\d{5}", plain) else None

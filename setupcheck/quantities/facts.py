@@ -9,13 +9,13 @@ from setupcheck.jobfile.setups import Join, Setup
 from setupcheck.quantities.book import Open, Scope
 from setupcheck.quantities.chilling import cold_error
 from setupcheck.quantities.contents import breaks, holds, material_family
-from setupcheck.quantities.joining import heat_error
+from setupcheck.quantities.joining import heat_error, key_of_error
 from setupcheck.quantities.readings import Reading
 from setupcheck.quantities.requirements import Stack, spoken
 from setupcheck.quantities.route import machine_of
 from setupcheck.quantities.scopes import CutEntry, HoldEntry
 from setupcheck.quantities.shop import Floor, outline
-from setupcheck.quantities.stuff import cap_of, material_of
+from setupcheck.quantities.stuff import cap_of, material_of, porous
 from setupcheck.record import record
 
 HOT = 58.0
@@ -31,9 +31,10 @@ COLD_BELOW = 10.0
 
 @record
 class UnknownFact:
-    """A fact the job could state and does not; `path` is the key to fill."""
+    """A fact the job could state and does not; `path` is the key to fill, `of` a material stated there that does not tell it."""
 
     path: str
+    of: str = ""
 
 
 Fact = str | int | float | bool | UnknownFact | None
@@ -84,6 +85,10 @@ def _joint_fact(floor: Floor, setup: Setup, join: Join, name: str) -> Fact:
             return _may_trap(floor, join)
         case "join.may_trap":
             return _may_trap(floor, join) or _hollow(floor, floor.loaded.ref(join.inner).part)
+        case "hub.porous":
+            part = floor.loaded.ref(join.outer).part
+            found = porous(floor.loaded.job.parts[part])
+            return found if found is not None else UnknownFact(f"parts.{part}.material")
         case "hub.brittle":
             return _breaks(floor, floor.loaded.ref(join.outer).part)
         case "join.brittle":
@@ -134,10 +139,10 @@ def _above_cap(floor: Floor, join: Join, heat: Heat, path: str) -> Fact:
         return UnknownFact(f"{path}.hub")
     error = heat_error(heat)
     if error is None:
-        return UnknownFact(f"{path}.oven_error")
+        return UnknownFact(f"{path}.{key_of_error(heat)}")
     found = material_of(floor, part)
     if isinstance(found, Open):
-        return UnknownFact(found.missing[0])
+        return _unknown_of(floor, part, found)
     return heat.hub + error[0] > cap_of(floor, part, found)
 
 
@@ -168,7 +173,14 @@ def _hollow(floor: Floor, part: str) -> bool:
 
 def _breaks(floor: Floor, part: str) -> bool | UnknownFact:
     found = material_of(floor, part)
-    return UnknownFact(found.missing[0]) if isinstance(found, Open) else breaks(found)
+    return _unknown_of(floor, part, found) if isinstance(found, Open) else breaks(found)
+
+
+def _unknown_of(floor: Floor, part: str, found: Open) -> UnknownFact:
+    """What is missing of a material: its name, one of its properties, or a name that is in the list."""
+    path = found.missing[0]
+    named = path == f"parts.{part}.material"
+    return UnknownFact(path, (floor.loaded.job.parts[part].material or "") if named else "")
 
 
 def _called(scope: Scope, field: str) -> str | None:
@@ -219,7 +231,7 @@ def _surface_fact(floor: Floor, scope: Scope, setup: Setup | None, name: str) ->
     if name == "part.material_family":
         return _family(called, f"parts.{parts[0]}.material")
     found = _content(called, name.removeprefix("part."))
-    return found if found is not None else UnknownFact(f"parts.{parts[0]}.material")
+    return found if found is not None else UnknownFact(f"parts.{parts[0]}.material", called)
 
 
 def _content(called: str, of: str) -> bool | None:
@@ -270,4 +282,4 @@ def _cut_fact(floor: Floor, scope: Scope, setup: Setup | None, name: str) -> Fac
 def _family(called: str | None, path: str) -> Fact:
     """Family of a material; unknown where none is named, or where its name does not say."""
     family = material_family(called) if called is not None else "other"
-    return family if family != "other" else UnknownFact(path)
+    return family if family != "other" else UnknownFact(path, called or "")

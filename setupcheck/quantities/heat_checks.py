@@ -7,6 +7,7 @@ import math
 from setupcheck.jobfile.setups import Join
 from setupcheck.notation import show
 from setupcheck.physics.cold_gas import carbon_dioxide, dry_ice_at_most, litres_at_most, oxygen_left
+from setupcheck.quantities.advice import WAY_TOO_LONG
 from setupcheck.quantities.book import Open, Quantity
 from setupcheck.quantities.contents import LOW_TEMPER, breaks
 from setupcheck.quantities.joining import JointSizes
@@ -19,6 +20,11 @@ LEAST_OXYGEN = 0.195
 """Share of oxygen below which air counts as deficient. Source: OSHA letter (excerpt opened)."""
 LONG_CARBON_DIOXIDE, SHORT_CARBON_DIOXIDE = 0.005, 0.03
 """Shares of carbon dioxide for eight hours and for 15 minutes. Source: NIOSH pocket guide with OSHA's limit (excerpt opened)."""
+LEAST_FLASH_MARGIN = 40.0
+"""Kelvin under the flash point that HEAT-011 asks for. Source: the rule book."""
+WITH_FILLING = 1.1
+"""Liquid nitrogen that boils off over what is stated: a tenth goes as warm vessels are filled. Source: our screening choice,
+as a sheet on liquid nitrogen has it (from memory)."""
 _TENTH = 0.1
 LITRE = 1e-3
 """m3. The file's amounts of liquid are kept in m3."""
@@ -110,13 +116,36 @@ def flash_margin(join: Join, op: int, planned: float) -> float | Open | None:
     return join.heat.flash_point - planned
 
 
-def oxygen(join: Join, op: int) -> float | Open | None:
-    """Share of oxygen left once all the liquid nitrogen is gas in the closed room; None where none is used.
+def flash_advice(join: Join, margin: float) -> str | None:
+    """On which side of its flash point the hottest bath is, and the flash point that would do. Source: `flash_margin`."""
+    if join.heat is None or join.heat.flash_point is None or margin >= LEAST_FLASH_MARGIN:
+        return None
+    side = "below" if margin > 0.0 else "above" if margin < 0.0 else "at"
+    by = f"{show(abs(margin), 'K', 0)} " if margin else ""
+    least = math.ceil(join.heat.flash_point + LEAST_FLASH_MARGIN - margin - 1e-9)
+    return (
+        f"At its hottest the bath is {by}{side} the flash point of {show(join.heat.flash_point, 'degC', 0)}. Take an oil that "
+        f"flashes at {least} degC or more by its safety data sheet, heat it less and chill the shaft, or use an oven."
+    )
 
-    Source: physics.cold_gas.
+
+def out_of_oil(join: Join, op: int) -> str | Open | None:
+    """State of a joint whose hub is lifted out of an oil bath, as stated: oil runs into its bore. None for other heat.
+
+    Source: the job file.
+    """
+    if join.by != "shrink" or join.heat is None or join.heat.by != "oil-bath":
+        return None
+    return join.joint if join.joint is not None else Open((f"setups.{op}.join.joint",))
+
+
+def oxygen(join: Join, op: int) -> float | Open | None:
+    """Share of oxygen left once all the liquid nitrogen, and a tenth for filling, is gas in the closed room; None without.
+
+    Source: physics.cold_gas; WITH_FILLING.
     """
     found = _boils(join, op, "liquid-nitrogen")
-    return found if not isinstance(found, tuple) else oxygen_left(found[0], litres=found[1] / LITRE)
+    return found if not isinstance(found, tuple) else oxygen_left(found[0], litres=WITH_FILLING * found[1] / LITRE)
 
 
 def dry_ice_gas(join: Join, op: int) -> float | Open | None:
@@ -154,7 +183,7 @@ def gas_advice(join: Join, op: int) -> str | None:
         return None
     volume, amount = heat.room_volume, heat.coolant.value
     if heat.cold_by == "liquid-nitrogen":
-        most, amount, unit, stay = litres_at_most(volume, oxygen=LEAST_OXYGEN), amount / LITRE, "l", ""
+        most, amount, unit, stay = (litres_at_most(volume, oxygen=LEAST_OXYGEN) / WITH_FILLING, amount / LITRE, "l", "")
     else:
         most, unit = dry_ice_at_most(volume, share=LONG_CARBON_DIOXIDE), "kg"
         brief = dry_ice_at_most(volume, share=SHORT_CARBON_DIOXIDE)
@@ -181,21 +210,35 @@ def carry_advice(join: Join, op: int, allowed: float, spare: float | None, oven:
         first = (
             f"Bring hub and shaft together within {show(math.floor(spare), 's', 0)} ({path}; {most} at the very most)"
         )
-    return f"{first}. With the way as it is: {oven}" if oven is not None else f"{first}."
+    if oven is None or oven.startswith(WAY_TOO_LONG):  # the first sentence has said it
+        return f"{first}."
+    return f"{first}. With the way as it is: {oven[:1].lower()}{oven[1:]}"
 
 
-def gauge_advice(
-    floor: Floor, join: Join, op: int, gauge: float, go: float, sizes: JointSizes, opens: float | None
-) -> str:
-    """Size of the gauge for the hot bore, and the largest that the smallest bore takes in. Source: quantities.joint_heat.
+def gauge_enters(floor: Floor, gauge: float, sizes: JointSizes, opens: float, go: float) -> float | None:
+    """Largest gauge that the smallest bore takes in at the least planned heat, the way taken off [mm], rounded down.
 
-    gauge  is asked for so that only a joint with one has it
+    None where that is less than the gauge which proves anything: then HEAT-001 speaks of the heat.
+    gauge  is asked for so that only a joint with one has it.  Source: quantities.opening.
     """
+    step = GAUGE_STEP[floor.loaded.job.units]
+    enters = math.floor((sizes.bore_low + opens) / step + 1e-6) * step
+    return enters if enters >= go - 1e-9 else None
+
+
+def gauge_to_try(gauge: float, go: float, enters: float | None) -> float | None:
+    """The stated gauge where it proves the bore and enters it [mm]; None where HEAT-007 or HEAT-018 has it made anew.
+
+    Source: the job file.
+    """
+    return gauge if go - 1e-9 <= gauge and (enters is None or gauge <= enters + 1e-9) else None
+
+
+def gauge_advice(floor: Floor, op: int, go: float, enters: float | None) -> str:
+    """Size of the gauge for the hot bore, and the largest that the smallest bore takes in. Source: quantities.joint_heat."""
     unit, digits = ("in", 4) if floor.loaded.job.units == "in" else ("mm", 3)
     made = f"Make the gauge {show(go, unit, digits)}, the largest journal and the play (setups.{op}.join.heat.gauge)"
-    step = GAUGE_STEP[floor.loaded.job.units]
-    enters = math.floor((sizes.bore_low + opens) / step + 1e-6) * step if opens is not None else 0.0
-    if enters < go:
+    if enters is None:
         return f"{made}."
     return f"{made}; as hot as planned, the smallest bore takes up to {show(enters, unit, digits)}."
 
@@ -222,21 +265,39 @@ HEAT_CHECKS = (
         {"spare": None, "oven": None},
     ),
     Quantity(
+        "heat.gauge_enters",
+        "join",
+        "mm",
+        3,
+        gauge_enters,
+        {
+            "floor": "route.floor",
+            "gauge": "heat.gauge",
+            "sizes": "fit.sizes",
+            "opens": "heat.opens_by_heat",
+            "go": "heat.go_gauge",
+        },
+        "largest gauge that the smallest hot bore takes in",
+    ),
+    Quantity(
+        "heat.gauge_to_try",
+        "join",
+        "mm",
+        3,
+        gauge_to_try,
+        {"gauge": "heat.gauge", "go": "heat.go_gauge", "enters": "settled heat.gauge_enters"},
+        "the stated gauge, where it proves the hot bore and enters it",
+        {"enters": None},
+    ),
+    Quantity(
         "heat.gauge_advice",
         "join",
         "",
         0,
         gauge_advice,
-        {
-            **_HERE,
-            **_OP,
-            "gauge": "heat.gauge",
-            "go": "heat.go_gauge",
-            "sizes": "fit.sizes",
-            "opens": "settled heat.opens_by_heat",
-        },
+        {"floor": "route.floor", **_OP, "go": "heat.go_gauge", "enters": "settled heat.gauge_enters"},
         "size of the gauge for the hot bore, in words",
-        {"opens": None},
+        {"enters": None},
     ),
     Quantity("heat.gauge", "join", "mm", 3, gauge, _JOIN, "gauge that is tried in the hot bore"),
     Quantity("heat.proved", "join", "", 0, proved, {**_HERE, **_OP}, "how the hot hub is proved"),
@@ -253,6 +314,16 @@ HEAT_CHECKS = (
         {**_JOIN, **_OP, "planned": "heat.planned_high"},
         "how far the oil bath stays under its flash point",
     ),
+    Quantity(
+        "heat.flash_advice",
+        "join",
+        "",
+        0,
+        flash_advice,
+        {**_JOIN, "margin": "heat.flash_margin"},
+        "flash point that an oil bath needs, in words",
+    ),
+    Quantity("heat.out_of_oil", "join", "", 0, out_of_oil, {**_JOIN, **_OP}, "state of a joint that comes out of oil"),
     Quantity("heat.oxygen", "join", "%", 1, oxygen, {**_JOIN, **_OP}, "oxygen left when the nitrogen is gas"),
     Quantity(
         "heat.carbon_dioxide", "join", "%", 2, dry_ice_gas, {**_JOIN, **_OP}, "carbon dioxide when the dry ice is gas"

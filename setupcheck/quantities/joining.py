@@ -190,6 +190,14 @@ def heat_error(heat: Heat) -> tuple[float, str] | None:
     return (row.value, row.name) if row is not None else None
 
 
+def key_of_error(heat: Heat) -> str:
+    """What to write where nothing tells the error of the heat: its source, which has a typical one, else the error itself.
+
+    Source: the job file.
+    """
+    return "by" if heat.by is None and heat.read_by is None else "oven_error"
+
+
 def _planned(floor: Floor, join: Join, op: int, way: float) -> Known | Open | None:
     """Planned heat with the error of its source taken one way [degC]: -1 the least, +1 the most; None by cold alone."""
     path, heat = f"setups.{op}.join.heat", join.heat if join.heat is not None else Heat()
@@ -197,7 +205,7 @@ def _planned(floor: Floor, join: Join, op: int, way: float) -> Known | Open | No
         return None
     error = heat_error(heat)
     if heat.hub is None or error is None:
-        return Open((f"{path}.hub",) * (heat.hub is None) + (f"{path}.oven_error",) * (error is None))
+        return Open((f"{path}.hub",) * (heat.hub is None) + (f"{path}.{key_of_error(heat)}",) * (error is None))
     return Known(heat.hub + way * error[0], frozenset({error[1]} - {""}))
 
 

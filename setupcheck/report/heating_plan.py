@@ -5,7 +5,7 @@ from __future__ import annotations
 from collections.abc import Iterator
 
 from setupcheck.flow import Review
-from setupcheck.quantities.book import Scope
+from setupcheck.quantities.book import Known, Scope
 from setupcheck.report.joint import fitted, has_play, in_words
 from setupcheck.report.wording import wrap
 
@@ -21,7 +21,10 @@ STEPS: tuple[tuple[str, ...], ...] = (
         "{heat.shaft_gain} on its way and comes at {heat.shaft_at}.",
     ),
     ("Let it soak for {heat.soak}, so that it is hot through.",),
-    ("Try a gauge of {heat.go_gauge} in the hot bore; lift the hub only when it enters.",),
+    (
+        "Try the gauge of {heat.gauge_to_try} (at least {heat.go_gauge}) in the hot bore; lift the hub only when it enters.",
+        "Try a gauge of {heat.go_gauge} in the hot bore; lift the hub only when it enters.",
+    ),
     (
         "Carried as planned, the hub still has {heat.at_shaft} at the shaft. In still air the wanted play lasts "
         "{heat.carry_allowed}, and after {heat.carry_until_bite} the tightest pair has none.",
@@ -55,6 +58,13 @@ def heating_plans_as_data(found: Review) -> list[dict[str, object]]:
 
 def _plans(found: Review) -> Iterator[tuple[Scope, list[str]]]:
     for scope, join in fitted(found):
-        steps = in_words(found, scope, STEPS) if join.by == "shrink" and not has_play(found, scope) else []
+        planned = join.by == "shrink" and not has_play(found, scope) and not _porous(found, scope)
+        steps = in_words(found, scope, STEPS) if planned else []
         if steps:
             yield scope, steps
+
+
+def _porous(found: Review, scope: Scope) -> bool:
+    """Whether hub or shaft has pores: oil soaks it, no figure of its grip holds, and no plan of heat makes that good."""
+    kind = found.book.get("fit.elastic_kind", scope)
+    return isinstance(kind, Known) and kind.value == "porous"

@@ -68,7 +68,7 @@ def _doubt(caution: Caution, book: Book[S], facts: Facts[S], at: S) -> str | Non
     fits = applies(trigger.when, facts, at)
     if fits.answer == "no":
         return None
-    doubt = f"not stated: {fits.missing[0]}" if fits.answer == "unknown" else ""
+    doubt = fits.doubt if fits.answer == "unknown" else ""
     if not trigger.quantity:
         return doubt
     value = read(book, trigger.quantity, at)

@@ -35,6 +35,7 @@ FACTS: Mapping[str, str] = {
     "join.brittle": "true when hub or shaft is of grey iron or hardened steel",
     "join.may_trap": "true when the hub may trap, or the shaft has a bore, a thread or holes",
     "hub.brittle": "true when the hub is",
+    "hub.porous": "true when the hub is sintered with pores, by its name or by what is stated of it",
     "hub.may_trap": "true when the hub's bore ends inside it, or it has threads or holes",
     "shaft.material_family": "family of the part that goes in",
     "heat.by": "oven, hot-plate, induction, oil-bath, flame",
@@ -48,10 +49,11 @@ FACTS: Mapping[str, str] = {
 
 @record
 class Applies:
-    """The answer, and for `unknown` the job paths that would settle it."""
+    """The answer, and for `unknown` the job paths that would settle it and the first doubt in words."""
 
     answer: Literal["yes", "no", "unknown"]
     missing: tuple[str, ...] = ()
+    doubt: str = ""
 
 
 _YES, _NO = Applies("yes"), Applies("no")
@@ -63,13 +65,15 @@ def applies(conditions: Sequence[Condition], facts: Facts[S], at: S) -> Applies:
     A fact that this kind of thing does not have (None) is a no.
     """
     missing: list[str] = []
+    doubt = ""
     for condition in conditions:
         fact = facts(at, condition.fact)
         if isinstance(fact, Unknown):
             missing.append(fact.path)
+            doubt = doubt or fact.doubt
         elif fact is None or not any(_same(fact, value) for value in condition.values):
             return _NO
-    return Applies("unknown", tuple(dict.fromkeys(missing))) if missing else _YES
+    return Applies("unknown", tuple(dict.fromkeys(missing)), doubt) if missing else _YES
 
 
 def _same(fact: str | float | bool, value: str | float | bool) -> bool:

@@ -87,9 +87,18 @@ class Book(Protocol[S]):
 
 @record
 class Unknown:
-    """A fact that the job could state but does not; `path` is the key to fill."""
+    """A fact that the job could state but does not; `path` is the key to fill.
+
+    of  what is stated there and does not tell the fact, as a material with a name that is not in the list
+    """
 
     path: str
+    of: str = ""
+
+    @property
+    def doubt(self) -> str:
+        """What a caution says of it."""
+        return f"not known of {self.of}: {self.path}" if self.of else f"not stated: {self.path}"
 
 
 Fact = str | int | float | bool | Unknown | None

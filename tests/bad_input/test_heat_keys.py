@@ -76,6 +76,16 @@ COLD = "is below absolute zero. Check the number and its unit"
             " | liquid-nitrogen makes nothing colder than -196 degC. Write shaft: -196 degC",
         ),
         (
+            "hub: -200 degC, by: oven",
+            ".hub | oven makes nothing colder than the room with its 20 degC, and hub is -200 degC. "
+            "Write the heat it is set to, as in hub: 150 degC, or drop by",
+        ),
+        (
+            "hub: 150 degC, by: oven, shaft: 60 degC, cold_by: freezer",
+            ".shaft | freezer makes nothing warmer than the room with its 20 degC, and shaft is 60 degC. "
+            "Write its cold, as in shaft: -18 degC, or drop cold_by",
+        ),
+        (
             "by: oven, flash_point: 220 degC",
             " | an oil has a flash_point, and oven has none. Drop it, or write by: oil-bath",
         ),
@@ -97,3 +107,17 @@ def test_a_service_or_a_room_below_absolute_zero_is_told_at_its_line() -> None:
     assert [f"{line} setups.70.join.serves_at | '-300 degC' {COLD}"] == told(text)
     text = WHEEL.replace("room: 20 degC", "room: -300 degC")
     assert [f"{line_of(text, 'room: -300')} room | '-300 degC' {COLD}"] == told(text)
+
+
+@pytest.mark.parametrize("room", ["200 degC", "-40.1 degC", "141 degF"])
+def test_a_room_that_nobody_works_in_is_refused(room: str) -> None:
+    text = WHEEL.replace("\nroom: 20 degC", f"\nroom: {room}")
+    says = f"room | a room of {room} is none to work in. Write room: 20 degC or what it has, from -40 to 60 degC"
+    assert [f"{line_of(text, f'room: {room}')} {says}"] == told(text)
+
+
+@pytest.mark.parametrize(
+    "said", ["hub: 20 degC, by: oven", "hub: -30 degC", "shaft: 60 degC", "shaft: 20 degC, cold_by: freezer"]
+)
+def test_heat_and_cold_at_the_room_and_parts_that_nothing_heats_or_chills_are_read(said: str) -> None:
+    read_job_text(WHEEL.replace(HEAT, f"heat: {{{said}}}"), "job.yaml")

@@ -92,9 +92,17 @@ def test_heat_that_reaches_its_most_too_early_names_both() -> None:
 
 
 def test_no_more_interference_is_taken_than_there_is() -> None:
-    remedy = broken(job(("carry: 12 s", "carry: 3000 s")), "HEAT-001")
+    remedy = broken(job((JOURNAL, "diameter: 32.060 ±0.003"), ("carry: 12 s", "carry: 3000 s")), "HEAT-001")
     assert remedy.startswith("Heat alone does not do it")
     assert remedy.endswith("Chill the shaft, or carry the hub faster.")
+
+
+def test_a_way_that_takes_the_heat_is_named_in_its_place() -> None:
+    """697 degC would be the heat for such a way."""
+    text = job(("hub: 175 degC", "hub: 140 degC"), ("carry: 12 s", "carry: 12 min"))
+    setting, seconds = said(r"of a hub set to (\d+) degC.* within (\d+) s \(carry\)\.$", broken(text, "HEAT-001"))
+    better = text.replace("hub: 140 degC", f"hub: {setting} degC").replace("carry: 12 min", f"carry: {seconds} s")
+    assert all(clears(better, rule) for rule in ("HEAT-001", "HEAT-002", "HEAT-003", "HEAT-006"))
 
 
 @pytest.mark.parametrize("journal", ["32.018", "31.990"])

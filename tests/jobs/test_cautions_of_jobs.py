@@ -49,6 +49,7 @@ BRONZE, LEADED, BERYLLIUM = (("material: S355J2\n    surfaces:\n      bar", f"ma
                              for name in ("C95400", "C93200", "C17200"))  # fmt: skip
 UNKNOWN = (BRONZE[0], BRONZE[1].replace("C95400", "bronze"))
 IRON, RING = ((BRONZE[0], BRONZE[1].replace("C95400", name)) for name in ("EN-GJL-250", "100Cr6"))
+SINTERED = (BRONZE[0], BRONZE[1].replace("C95400", "sintered iron"))
 HARDENED_SHAFT = ("material: S355J2\n    surfaces:\n      journal", "material: 16MnCr5\n    surfaces:\n      journal")
 BRONZE_SHAFT = ("material: S355J2\n    surfaces:\n      journal", "material: C95400\n    surfaces:\n      journal")
 FLAME, PLATE, COIL, OIL = (("by: oven", f"by: {way}") for way in ("flame", "hot-plate", "induction", "oil-bath"))
@@ -109,12 +110,15 @@ SET_OFF: Mapping[str, tuple[int, Changes, Changes]] = {
     "oil-bath-flash-point": (20, (OIL,), (PLATE,)),
     "oil-bath-water": (20, (OIL,), (PLATE,)),
     "solvent-before-heat": (20, (DEGREASED,), ()),
+    "cast-iron-heat": (20, (IRON,), (IRON, PRESSED)),
+    "sintered-oil-heat": (20, (SINTERED,), (SINTERED, PRESSED)),
     "sealed-cavity-heat": (20, (BLIND,), ()),
     "sealed-cavity-press": (20, (BLIND, PRESSED), (PRESSED,)),
     "sealed-cavity-cold": (20, (cold("dry-ice"), BLIND), (cold("dry-ice"),)),
     "liquid-air-and-oil": (20, (cold("liquid-nitrogen"),), (cold("dry-ice"),)),
     "dry-ice-room": (20, (cold("dry-ice"),), (cold("freezer"),)),
     "liquid-nitrogen-room": (20, (cold("liquid-nitrogen"),), (cold("dry-ice"),)),
+    "nitrogen-bath-spits": (20, (cold("liquid-nitrogen"),), (cold("dry-ice"),)),
     "cold-part-and-frost": (20, (cold("freezer"),), ()),
     "cold-brittle-steel": (20, (cold("dry-ice"),), (cold("dry-ice"), BRONZE_SHAFT)),
     "hub-burst": (20, (IRON,), (HARDENED_SHAFT,)),
@@ -138,6 +142,7 @@ SILENT: Mapping[str, tuple[Changes, str]] = {
     "heat-uneven": (((", by: oven", ""),), "setups.20.join.heat.by"),
     "oil-bath-flash-point": (((", by: oven", ""),), "setups.20.join.heat.by"),
     "solvent-before-heat": ((NO_JOINT,), "setups.20.join.joint"),
+    "sintered-oil-heat": (((BRONZE[0], "surfaces:\n      bar"),), "parts.hub.material"),
     "sealed-cavity-heat": ((BLIND, ("hub: 150 degC, ", "")), "setups.20.join.heat.hub"),
     "cold-brittle-steel": ((cold("freezer"),), "setups.20.join.heat.shaft"),
     "cold-part-and-frost": ((("by: oven}", "by: oven, shaft: -30 degC}"),), "setups.20.join.heat.cold_by"),
@@ -165,7 +170,14 @@ def test_a_caution_is_set_off_by_what_it_is_about_and_by_nothing_near_it(name: s
 def test_a_caution_that_the_job_does_not_settle_is_printed_and_names_the_key(name: str) -> None:
     without, key = SILENT[name]
     op = 10 if "setups.10" in key or name in OF_THE_CUT else 20
-    assert f"not stated: {key}" == asked(changed(TURNED, *without))[name, op]
+    how = "not known of bronze" if UNKNOWN in without else "not stated"
+    assert f"{how}: {key}" == asked(changed(TURNED, *without))[name, op]
+
+
+def test_sintered_iron_is_not_asked_about_beryllium_and_bronze() -> None:
+    said = {name for name, _ in asked(changed(TURNED, SINTERED))}
+    assert "sintered-oil-heat" in said
+    assert not said & {"beryllium-copper-heat", "beryllium-copper-cut", "bronze-chips"}
 
 
 def test_plain_turning_of_steel_says_no_more_than_it_did() -> None:
@@ -283,7 +295,7 @@ def test_the_same_question_at_two_operations_is_printed_once() -> None:
 
 def test_a_caution_in_doubt_says_why_and_one_that_is_not_printed_is_named() -> None:
     assert (
-        "never dry-sand it. The limit in the air is 30 ug/m3 (EU; OSHA has 50). (not stated: parts.hub.material)"
+        "never dry-sand it. The limit in the air is 30 ug/m3 (EU; OSHA has 50). (not known of bronze: parts.hub.material)"
         in flat(as_text(reviewed(changed(TURNED, UNKNOWN))))
     )
     short, long = as_text(reviewed(WHEEL)), as_text(reviewed(WHEEL), everything=True)

@@ -91,7 +91,7 @@ def test_a_joint_that_will_not_go_on_or_not_hold_is_caught(good: str, bad: str, 
     ("gone", "instead", "key"),
     [
         ("hub: 175 degC, ", "", "setups.70.join.heat.hub"),
-        (" by: oven, oven_error: 10 degC,", "", "setups.70.join.heat.oven_error"),
+        (" by: oven, oven_error: 10 degC,", "", "setups.70.join.heat.by"),
         ("material: CuSn12-C\n", "\n", "parts.wheel.material"),
         ("material: CuSn12-C\n", "material: unobtainium\n", "parts.wheel.material"),
         ("diameter: 32 H5,", "diameter: 32,", "parts.wheel.surfaces.bore.diameter"),

@@ -28,10 +28,18 @@ SLIPS: Mapping[str, tuple[str, set[str], Mapping[str, tuple[Change, ...]]]] = {
     # the rule, those that speak with it in one job or the other, and what is changed in each
     "oil bath near its flash point": (
         "HEAT-011",
-        set(),
+        {"HEAT-017"},  # the joints are planned degreased
         {
             ROTATOR: (("by: oven,", "by: oil-bath, flash_point: 215 degC,"),),  # 185 at its hottest: 30 K
             RING: (("by: oven,", "by: oil-bath, flash_point: 150 degC,"),),  # 120 at its hottest
+        },
+    ),
+    "degreased joint out of an oil bath": (
+        "HEAT-017",
+        set(),
+        {
+            ROTATOR: (("by: oven,", "by: oil-bath, flash_point: 260 degC,"),),
+            SPINDLE: (("by: oven,", "by: oil-bath, flash_point: 260 degC,"),),
         },
     ),
     "nitrogen in a small store room": (
@@ -64,6 +72,11 @@ SLIPS: Mapping[str, tuple[str, set[str], Mapping[str, tuple[Change, ...]]]] = {
         "HEAT-007",
         set(),
         {ROTATOR: (("gauge: 32.07", "gauge: 32.033"),), COUPLING: (("gauge: 80.16", "gauge: 80.078"),)},
+    ),
+    "gauge larger than the hot bore": (
+        "HEAT-018",
+        set(),
+        {ROTATOR: (("gauge: 32.07", "gauge: 32.12"),), COUPLING: (("gauge: 80.16", "gauge: 80.4"),)},
     ),
     "carried for minutes": (
         "HEAT-006",

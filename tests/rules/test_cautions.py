@@ -58,6 +58,11 @@ def test_a_fact_that_is_not_stated_is_no_reason_to_keep_quiet(tmp_path: Path) ->
     ]
 
 
+def test_a_material_that_is_named_and_not_known_is_not_called_unstated(tmp_path: Path) -> None:
+    done = run(tmp_path, {}, {"join.by": Unknown("parts.wheel.material", "sintered iron")})
+    assert ["not known of sintered iron: parts.wheel.material"] == [c.because for c in done.cautions]
+
+
 def test_a_certain_trigger_takes_the_place_of_a_doubtful_one_at_the_same_operation(tmp_path: Path) -> None:
     kinds: dict[str, Fact] = {"10/centre": Unknown("setups.10.machine"), "10/square": "lathe"}
     fake = FakeBook(QUANTITIES, HOLDS, {})
@@ -188,6 +193,12 @@ OPERATIONS = {
     "shrinking a hub of beryllium copper on": (
         {"setup.kind": "join", "join.by": "shrink", "heat.by": "oven", "part.beryllium": True},
         ["beryllium-copper-heat", "glove-heat-rating", "hot-part", "shrink-seized-halfway"]),
+    "shrinking a cast-iron hub on": (
+        {"setup.kind": "join", "join.by": "shrink", "heat.by": "oven", "part.material_family": "cast-iron"},
+        ["glove-heat-rating", "hot-part", "cast-iron-heat", "shrink-seized-halfway"]),
+    "shrinking a sintered hub on": (
+        {"setup.kind": "join", "join.by": "shrink", "heat.by": "oven", "hub.porous": True},
+        ["glove-heat-rating", "sintered-oil-heat", "hot-part", "shrink-seized-halfway"]),
     "shrinking an iron hub on from an oil bath": (
         {"setup.kind": "join", "join.by": "shrink", "heat.by": "oil-bath", "hub.brittle": True},
         ["glove-heat-rating", "oil-bath-flash-point", "oil-bath-water", "hub-burst", "hot-part",
@@ -200,8 +211,8 @@ OPERATIONS = {
     "shrinking on from liquid nitrogen": (
         {"setup.kind": "join", "join.by": "shrink", "heat.by": "oven", "heat.cold_by": "liquid-nitrogen",
          "heat.deep_cold": True, "shaft.material_family": "steel"},
-        ["glove-heat-rating", "liquid-nitrogen-room", "cold-brittle-steel", "hot-part", "cold-part-and-frost",
-         "liquid-air-and-oil", "shrink-seized-halfway"]),
+        ["glove-heat-rating", "liquid-nitrogen-room", "cold-brittle-steel", "hot-part", "nitrogen-bath-spits",
+         "cold-part-and-frost", "liquid-air-and-oil", "shrink-seized-halfway"]),
     "shrinking a blind hub onto a shaft from dry ice, by cold alone": (
         {"setup.kind": "join", "join.by": "shrink", "heat.by": None, "heat.hot": False, "heat.cold_by": "dry-ice",
          "hub.may_trap": True, "join.may_trap": True, "heat.deep_cold": True, "shaft.material_family": "steel"},

@@ -19,7 +19,7 @@ def test_oxygen_after_the_loss_of_the_whole_vessel(litres: float, room: float, p
 
 
 def test_a_litre_needs_ten_and_a_half_cubic_metres() -> None:
-    """0.70 x 20.9/(20.9 - 19.5), the caution's figure."""
+    """0.70 x 20.9/(20.9 - 19.5); the caution's 11.5 m3 have the tenth for filling in them."""
     assert oxygen_left(10.45, litres=1.0) == pytest.approx(0.195, abs=1e-5)
     assert 10.45 == pytest.approx(1.0 / litres_at_most(1.0, oxygen=0.195), rel=1e-3)
 

@@ -40,6 +40,9 @@ from setupcheck.quantities.material_data import UnknownMaterial, materials
         ("bearing bronze", None, None, None),
         ("brass", None, True, None),
         ("Beryl 4", None, None, None),
+        ("sintered iron", None, False, False),
+        ("porous iron", None, False, False),
+        ("sintered bronze", None, None, None),
         ("unobtainium", None, None, None),
     ],
 )

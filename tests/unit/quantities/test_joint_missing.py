@@ -35,7 +35,7 @@ CASES = [
     ("yield of a brass", ("CuSn12-C", "C36000"), "parts.ring.properties.yield_strength", ("FIT-004",)),
     ("heat", ("      heat: {hub: 190 degC, oven_error: 5 degC, carry: 10 s}\n", ""), f"{JOIN}.heat.hub", ("HEAT-001",)),
     ("heat of the hub", ("hub: 190 degC, ", ""), f"{JOIN}.heat.hub", ("HEAT-001",)),
-    ("error of the oven", ("oven_error: 5 degC, ", ""), f"{JOIN}.heat.oven_error", ("HEAT-001",)),
+    ("source of the heat", ("oven_error: 5 degC, ", ""), f"{JOIN}.heat.by", ("HEAT-001",)),
     ("time of the carry", (", carry: 10 s", ""), f"{JOIN}.heat.carry", ("HEAT-001",)),
 ]
 

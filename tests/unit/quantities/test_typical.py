@@ -156,10 +156,10 @@ def test_a_hub_on_a_hot_plate_takes_the_plates_typical_error_and_says_so() -> No
     assert ["warn"] == [f.verdict for f in found.evaluation.findings if f.rule == "HEAT-005"]
 
 
-@pytest.mark.parametrize("by", ["by: flame, ", ""])
-def test_a_heat_source_without_a_typical_error_stays_open(by: str) -> None:
+@pytest.mark.parametrize(("by", "key"), [("by: flame, ", "oven_error"), ("", "by")])
+def test_a_heat_source_without_a_typical_error_stays_open(by: str, key: str) -> None:
     found = reviewed(changed(WHEEL, ("by: oven, oven_error: 10 degC, ", by)))
-    assert answer(found, "heat.planned_low", "70") == Open(("setups.70.join.heat.oven_error",))
+    assert answer(found, "heat.planned_low", "70") == Open((f"setups.70.join.heat.{key}",))
     assert {"open"} == {f.verdict for f in found.evaluation.findings if f.rule in ("HEAT-001", "HEAT-002")}
     assert [] == [f for f in found.evaluation.findings if f.rule == "HEAT-005"]
 
