@@ -10,6 +10,7 @@ from setupcheck.jobfile.models import Flat
 from setupcheck.quantities.book import Known, Scope
 from setupcheck.quantities.contact import Maps
 from setupcheck.quantities.drive import WheelCut
+from setupcheck.report.exact import why_not
 from setupcheck.report.joint import in_words
 from setupcheck.report.wording import clean, wrap
 
@@ -66,7 +67,7 @@ BENEATH: tuple[tuple[str, ...], ...] = (
 
 def contacts(found: Review) -> Iterator[str]:
     """One block for each cut of a worm wheel whose contact could be worked out; nothing where no job asks for it."""
-    for number, (scope, cut, maps) in enumerate(_asked(found)):
+    for number, (scope, cut, maps) in enumerate(worked_out(found)):
         yield from [""] * (number > 0)
         (said,) = in_words(found, scope, ((HEAD,),)) or [""]
         yield from wrap(f"CONTACT, op {scope.op}: {said}", rest="  ")
@@ -85,16 +86,25 @@ def contacts_as_data(found: Review) -> list[dict[str, object]]:
             "left": picture(maps.left.marked),
             "says": in_words(found, scope, BENEATH),
         }
-        for scope, cut, maps in _asked(found)
+        for scope, cut, maps in worked_out(found)
     ]
 
 
-def _asked(found: Review) -> Iterator[tuple[Scope, WheelCut, Maps]]:
+def worked_out(found: Review) -> Iterator[tuple[Scope, WheelCut, Maps]]:
+    """Cuts whose contact is known from the exact gap, in the order of the job."""
     for scope in found.book.instances("cut"):
         answer, cut = found.book.get("contact.maps", scope), found.book.get("cutter.wheel_cut", scope)
         if isinstance(answer, Known) and isinstance(answer.value, Maps):
             assert isinstance(cut, Known) and isinstance(cut.value, WheelCut)
             yield scope, cut.value, answer.value
+
+
+def the_contact(found: Review) -> tuple[Scope, WheelCut, Maps]:
+    """The contact of the job's wheel as its last cut leaves it. Raises: SetupcheckError that says what is missing."""
+    every = [*worked_out(found)]
+    if not every:
+        raise why_not(found, "contact", "contact.maps")
+    return every[-1]
 
 
 def picture(marked: np.ndarray) -> list[str]:

@@ -4,13 +4,13 @@ from __future__ import annotations
 
 from collections.abc import Iterator
 
-from setupcheck.errors import SetupcheckError
 from setupcheck.flow import Review
 from setupcheck.jobfile.grinding import Grinding
 from setupcheck.notation import show
 from setupcheck.quantities.book import Known, Open, Scope
 from setupcheck.quantities.drive import WheelCut
 from setupcheck.quantities.inserts import decimals
+from setupcheck.report.exact import why_not
 from setupcheck.report.joint import in_words
 from setupcheck.report.wording import clean, wrap
 
@@ -117,22 +117,7 @@ def the_insert(found: Review) -> tuple[Scope, WheelCut]:
     """The insert of the job. Raises: SetupcheckError that says what is missing."""
     for scope, cut in drawn_inserts(found):
         return scope, cut
-    job, file = found.loaded.job, found.loaded.file
-    if job.mesh is None or job.worm is None:
-        raise SetupcheckError(
-            f"{file}: no insert to tell. It takes a worm wheel cut gap by gap: write worm, mesh and a single-point cutter"
-        )
-    if job.mesh.contact is None:
-        raise SetupcheckError(
-            f"{file}: the profile of an insert comes from the exact gap, and the job does not ask for it. Write contact: exact "
-            "under mesh"
-        )
-    for scope in found.book.instances("cut"):
-        answer = found.book.get("insert.profile", scope)
-        if isinstance(answer, Open):
-            why = answer.because or f"fill {', '.join(answer.missing)}"
-            raise SetupcheckError(f"{file}: cannot tell the insert of op {scope.op}: {why}")
-    raise SetupcheckError(f"{file}: no single-point cutter makes the teeth of {job.mesh.wheel}, so there is no insert")
+    raise why_not(found, "insert", "insert.profile")
 
 
 def _kind(found: Review, scope: Scope, cut: WheelCut) -> str:

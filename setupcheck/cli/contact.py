@@ -1,0 +1,38 @@
+"""`setupcheck contact JOB`: where blue would mark a worm wheel, how unevenly it would run, and a map of both flanks."""
+
+# Annotations are evaluated as they stand (no __future__ import): typer would have to compile each of them from its text.
+
+import sys
+from pathlib import Path
+from typing import Annotated
+
+import typer
+
+from setupcheck.cli.writing import refuse_place, write_whole
+
+
+def command(
+    job: Annotated[Path, typer.Argument(metavar="JOB", help="Job file (YAML).", show_default=False)],
+    svg: Annotated[Path | None, typer.Option(help="Write the map to this file.", show_default=False)] = None,
+    force: Annotated[bool, typer.Option("--force", help="Replace a file that is already there.")] = False,
+) -> None:
+    """Tell the contact of a worm wheel with its worm from the exact gap, and draw both flanks as a map.
+
+    The job asks for it with contact: exact under mesh.
+
+    Example: setupcheck contact jobs/wheel-on-spindle.yaml --svg contact.svg
+    """
+    from setupcheck.errors import printable
+    from setupcheck.flow import review
+    from setupcheck.report.contact import contacts, the_contact
+    from setupcheck.report.contact_drawing import as_drawing
+
+    if svg is not None:
+        refuse_place(svg, force=force)
+    found = review(job)
+    the_contact(found)
+    if svg is not None:
+        write_whole(svg, as_drawing(found), force=force)
+    sys.stdout.write("\n".join(contacts(found)) + "\n")
+    if svg is not None:
+        sys.stdout.write(f"\nwritten: {printable(str(svg))}\n")

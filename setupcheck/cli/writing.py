@@ -1,0 +1,49 @@
+"""Files that commands write: refused first where they cannot be written, and never met half written."""
+
+from __future__ import annotations
+
+import contextlib
+import os
+import tempfile
+from pathlib import Path
+
+from setupcheck.errors import SetupcheckError, printable
+
+
+def refuse_place(path: Path, *, force: bool) -> None:
+    """Refuses a place where a drawing cannot be written, before anything is worked out."""
+    shown = printable(str(path))
+    if path.is_dir():
+        raise SetupcheckError(f"{shown} is a folder. Write the name of a file, as in {shown}/drawing.svg")
+    if not path.parent.is_dir():
+        raise SetupcheckError(f"{shown}: there is no folder {printable(str(path.parent))}. Make it first")
+    if path.exists() and not force:
+        raise SetupcheckError(
+            f"{shown} is already there and stays as it is. Write another name, or --force to replace it"
+        )
+
+
+def write_whole(path: Path, text: str, *, force: bool) -> None:
+    """The whole file at once: it is written beside its place and then moved there, so nobody ever meets half of it."""
+    beside: Path | None = None
+    try:
+        handle, name = tempfile.mkstemp(dir=path.parent, prefix=f".{path.name}.", suffix=".part")
+        beside = Path(name)
+        with os.fdopen(handle, "w", encoding="utf-8", newline="\n") as file:
+            file.write(text)
+        beside.chmod(0o666 & ~_umask())
+        refuse_place(path, force=force)  # somebody may have written there meanwhile
+        beside.replace(path)
+    except OSError as why:
+        raise SetupcheckError(f"{printable(str(path))} cannot be written: {why.strerror or why}") from None
+    finally:
+        if beside is not None:
+            with contextlib.suppress(OSError):
+                beside.unlink(missing_ok=True)
+
+
+def _umask() -> int:
+    """What new files of this process may not have."""
+    mask = os.umask(0)
+    os.umask(mask)
+    return mask
