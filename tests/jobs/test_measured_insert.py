@@ -143,11 +143,15 @@ def test_a_left_flank_is_a_right_one_of_the_insert_with_its_flanks_exchanged() -
     assert exchanged.centre == pytest.approx(-maps(text).left.centre, abs=1e-6)
 
 
-def test_a_ridge_on_either_flank_leaves_the_same_tolerances() -> None:
-    right, left = (off_by("ninety", -0.004, flank=flank) for flank in ("right", "left"))
-    for name in ("tilt", "mid_plane", "depth", "wander_along"):
+def test_one_flank_too_steep_leaves_the_same_tolerances_whichever_it_is() -> None:
+    heights, halves = planned("ninety")
+    steep = tuple(w - 0.006 * h / heights[-1] for h, w in zip(heights, halves, strict=True))
+    right = measured("ninety", {"heights": heights, "right": steep, "left": halves})
+    left = measured("ninety", {"heights": heights, "right": halves, "left": steep})
+    for name in ("tilt_less", "tilt_more", "mid_plane", "depth", "wander_along", "wander_up"):
         assert number(right, f"contact.{name}") == pytest.approx(number(left, f"contact.{name}"), rel=1e-6)
-    assert number(right, "contact.depth") < number(NINETY, "contact.depth")
+    assert number(left, "contact.mid_plane") < 0.9 * number(NINETY, "contact.mid_plane")
+    assert number(left, "contact.wander_up") > 1.2 * number(NINETY, "contact.wander_up")
 
 
 def test_without_an_uncertainty_all_that_rests_on_the_points_is_open() -> None:
