@@ -1,7 +1,7 @@
 """The job models: parts, machines, cutters, place, requirements. Sizes mm, angles rad, degC, N, s.
 
 Models that describe a setup stand in `setups.py`, the heat of a joint in `heating.py`, worm and mesh in `worm.py`, how an insert
-is ground in `grinding.py`. All are frozen and refuse unknown keys.
+is ground in `grinding.py`, its measured profile in `insert_profile.py`. All are frozen and refuse unknown keys.
 """
 
 # Annotations are evaluated as they stand (no __future__ import): pydantic would have to compile each of them from its text.
@@ -17,6 +17,7 @@ from pydantic import (
 
 from setupcheck import notation
 from setupcheck.jobfile.grinding import Grinding
+from setupcheck.jobfile.insert_profile import InsertProfile
 from setupcheck.jobfile.properties import Properties
 from setupcheck.jobfile.types import (
     Angle,
@@ -276,7 +277,10 @@ class Part(Shop):
 
 
 class Cutter(Shop):
-    """A cutter. `width` of an insert, at the height `width_at` above its tip; at pitch height where none is said."""
+    """A cutter. `width` of an insert, at the height `width_at` above its tip; at pitch height where none is said.
+
+    `profile` of the insert as measured after grinding.
+    """
 
     kind: Literal["single-point", "hob", "form-cutter", "drill", "reamer", "boring-head", "grinding-wheel", "broach"]
     tip_radius: Size | None = None
@@ -286,6 +290,7 @@ class Cutter(Shop):
     width: Dim | None = None
     width_at: Size | None = None
     grinding: Grinding | None = None
+    profile: InsertProfile | None = None
     diameter: Size | None = None
     speed: Speed | None = None
 

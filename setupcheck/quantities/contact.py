@@ -60,17 +60,46 @@ def bench_of(drill: Drill) -> Workbench:
     return workbench(drill.pair, drill.blank, clearance=drill.clearance, film=drill.film)
 
 
-@lru_cache(KEPT)
-def insert_of(drill: Drill, radius: float, kind: str) -> Insert:
-    """Insert for the lead angle and a radius. Raises: ValueError for a cutter smaller than the worm."""
-    from setupcheck.worm.gap_insert import envelope_insert, mid_plane_insert
+@record
+class Points:
+    """Measured profile of an insert [mm], from its tip upwards: heights and half widths, (n,), as plain numbers.
 
+    right cuts the flank of the gap that is on the right seen from the wheel's +z face with the gap up.
+    """
+
+    heights: tuple[float, ...]
+    right: tuple[float, ...]
+    left: tuple[float, ...]
+
+    @property
+    def other_way(self) -> Points:
+        """The same with its flanks exchanged: what it does to a right flank, the true one does to a left one."""
+        return Points(self.heights, self.left, self.right)
+
+
+Made = str | Points
+"""What an insert is: `envelope` or `mid-plane` as planned, else its measured points."""
+
+
+@lru_cache(KEPT)
+def insert_of(drill: Drill, radius: float, made: Made) -> Insert:
+    """Insert for the lead angle and a radius, or as measured.
+
+    Raises: ValueError for a cutter smaller than the worm, or points that are no profile.
+    """
+    import numpy as np
+
+    from setupcheck.worm.gap_insert import envelope_insert, mid_plane_insert
+    from setupcheck.worm.plunge_gap import measured_insert
+
+    if isinstance(made, Points):
+        return measured_insert(*(np.array(v) for v in (made.heights, made.right, made.left)))
     bench = bench_of(drill)
-    return (envelope_insert if kind == "envelope" else mid_plane_insert)(bench.gap, bench.cut(radius))
+    return (envelope_insert if made == "envelope" else mid_plane_insert)(bench.gap, bench.cut(radius))
 
 
 @lru_cache(2 * KEPT)
-def run(drill: Drill, made_for: float, kind: str, cut: Cut, side: Side) -> Contact:
+def run(drill: Drill, made_for: float, made: Made, cut: Cut, side: Side) -> Contact:
     """Contact of one flank that an insert made for a radius leaves in a setting. Raises: ValueError as its parts."""
     from setupcheck.worm.best_cutter import COLUMNS, ROWS
     from setupcheck.worm.ease_off import ease_off
@@ -79,7 +108,7 @@ def run(drill: Drill, made_for: float, kind: str, cut: Cut, side: Side) -> Conta
 
     right = bench_of(drill).flank
     flank = right if side == 1 else wheel_flank(drill.pair, drill.blank, side=side, rows=ROWS, columns=COLUMNS)
-    return contact(flank, ease_off(flank, insert_of(drill, made_for, kind), cut).angle, film=drill.film)
+    return contact(flank, ease_off(flank, insert_of(drill, made_for, made), cut).angle, film=drill.film)
 
 
 @lru_cache(KEPT)
@@ -101,9 +130,12 @@ def drill(pair: Pair, blank: Blank, made_for: Cut, film: float) -> Drill:
 
 
 @in_range
-def maps(drill: Drill, made_for: Cut, setting: Cut, kind: str) -> Maps:
-    """Contact of both flanks for insert and setting as planned, without errors. Source: exact gap, derived in worm.meshing."""
-    right, left = (run(drill, made_for.radius, kind, setting, side) for side in (1, -1))
+def maps(drill: Drill, made_for: Cut, setting: Cut, made: Made) -> Maps:
+    """Contact of both flanks for setting as planned and insert as planned or measured, without errors.
+
+    Source: exact gap, derived in worm.meshing.
+    """
+    right, left = (run(drill, made_for.radius, made, setting, side) for side in (1, -1))
     return Maps(right, left)
 
 
@@ -236,7 +268,7 @@ FLOOR = {"floor": "route.floor"}
 CUT = {"cut": "cutter.wheel_cut"}
 DRILL = {"drill": "contact.drill"}
 MADE = {**DRILL, "made_for": "contact.made_for"}
-SET = {**MADE, "setting": "contact.setting", "kind": "cutter.insert"}
+SET = {**MADE, "setting": "contact.setting", "made": "contact.made"}
 _MAPS = {"maps": "contact.maps"}
 BEST = {"best": "contact.recommended"}
 _PAIR = {"pair": "contact.pair", "blank": "contact.blank", "made_for": "contact.made_for", "film": "contact.film"}

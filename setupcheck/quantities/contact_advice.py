@@ -7,7 +7,7 @@ from typing import TYPE_CHECKING
 
 from setupcheck.notation import show, show_angle
 from setupcheck.quantities.book import Quantity
-from setupcheck.quantities.contact import Drill, bench_of, best_of, radius_step, run
+from setupcheck.quantities.contact import Drill, Made, Points, bench_of, best_of, radius_step, run
 from setupcheck.quantities.drive import WheelCut
 from setupcheck.quantities.exact_gap import in_range, row
 from setupcheck.quantities.shop import Floor
@@ -27,6 +27,13 @@ def _um(floor: Floor, value: float, digits: int = 1) -> str:
     return show(value, "thou", digits + 1) if floor.loaded.job.units == "in" else show(value, "um", digits)
 
 
+def _ground_to(cut: WheelCut, made: Made) -> str:
+    """What to do with an insert that is not the envelope, and where that is written."""
+    if isinstance(made, Points):
+        return f"Grind the insert again, to the envelope, and measure it ({cut.cutter_path}.profile)"
+    return f"Grind the insert to the envelope ({cut.cutter_path}.insert: envelope)"
+
+
 def for_radius(cut: WheelCut, radius: float, share: float, floor: Floor) -> str:
     """The recommended radius and what it marks. Source: worm.best_cutter."""
     return (
@@ -40,7 +47,7 @@ def for_error(
     drill: Drill,
     made_for: Cut,
     setting: Cut,
-    kind: str,
+    made: Made,
     budget: float,
     error: float,
     cut: WheelCut,
@@ -48,14 +55,11 @@ def for_error(
     radius: float | None,
 ) -> str | None:
     """What brings the transmission error of the cut into the budget. Source: exact map of each change."""
-    path = f"{cut.cutter_path}.insert: envelope"
+    ground = _ground_to(cut, made)
     true, at = run(drill, cut.radius, "envelope", made_for, 1), run(drill, cut.radius, "envelope", setting, 1)
-    if kind != "envelope" and at.transmission_error <= budget:
-        return (
-            f"Grind the insert to the envelope ({path}): the error falls from {_um(floor, error)} to "
-            f"{_um(floor, at.transmission_error)}."
-        )
-    grind = f" and grind the insert to the envelope ({path})" if kind != "envelope" else ""
+    if made != "envelope" and at.transmission_error <= budget:
+        return f"{ground}: the error falls from {_um(floor, error)} to {_um(floor, at.transmission_error)}."
+    grind = f" and {ground[0].lower()}{ground[1:]}" if made != "envelope" else ""
     if abs(setting.tilt - made_for.tilt) > SAME and true.transmission_error <= budget:
         lead = show_angle(made_for.tilt, "dms", 0)
         return (
@@ -74,15 +78,15 @@ def for_error(
 
 @in_range
 def for_ends(
-    drill: Drill, made_for: Cut, setting: Cut, kind: str, cut: WheelCut, floor: Floor, radius: float, share: float
+    drill: Drill, made_for: Cut, setting: Cut, made: Made, cut: WheelCut, floor: Floor, radius: float, share: float
 ) -> str | None:
     """What keeps the ends of the face clear: the radius, the insert or the tilt. Source: exact map of each change."""
     from setupcheck.worm.best_cutter import CLEAR
 
     if cut.radius < radius:
         return for_radius(cut, radius, share, floor)
-    if kind != "envelope" and run(drill, cut.radius, "envelope", setting, 1).ends <= CLEAR:
-        return f"Grind the insert to the envelope ({cut.cutter_path}.insert: envelope); the radius would do."
+    if made != "envelope" and run(drill, cut.radius, "envelope", setting, 1).ends <= CLEAR:
+        return f"{_ground_to(cut, made)}; the radius would do."
     if abs(setting.tilt - made_for.tilt) > SAME:
         lead = show_angle(made_for.tilt, "dms", 0)
         return f"Set {lead} (setups.{cut.op}.head.tilt); the radius would do."
@@ -152,7 +156,7 @@ _SET = {
     "drill": "contact.drill",
     "made_for": "contact.made_for",
     "setting": "contact.setting",
-    "kind": "cutter.insert",
+    "made": "contact.made",
     **_FLOOR,
 }
 _BEST = {"radius": "contact.radius", "share": "contact.radius_share"}

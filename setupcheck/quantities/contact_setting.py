@@ -14,7 +14,20 @@ from setupcheck.ledger.figures import MidPlane
 from setupcheck.ledger.route import State
 from setupcheck.quantities.backlash import depth_of_cut
 from setupcheck.quantities.book import Open, Quantity
-from setupcheck.quantities.contact import ASKED, BEST, CUT, FLOOR, KEPT, MADE, SET, Drill, bench_of, insert_of
+from setupcheck.quantities.contact import (
+    ASKED,
+    BEST,
+    CUT,
+    FLOOR,
+    KEPT,
+    MADE,
+    SET,
+    Drill,
+    Made,
+    Points,
+    bench_of,
+    insert_of,
+)
 from setupcheck.quantities.drive import WheelCut
 from setupcheck.quantities.exact_gap import in_range, row
 from setupcheck.quantities.shop import Floor
@@ -27,10 +40,19 @@ if TYPE_CHECKING:  # imported where they are used: no other review needs them
 
 
 @lru_cache(KEPT)
-def _tolerances(drill: Drill, radius: float, kind: str, budget: float) -> dict[str, Tolerance]:
+def _tolerances(drill: Drill, radius: float, made: Made, budget: float) -> dict[str, Tolerance]:
+    """Of both flanks together; a left flank is a right one of an insert with its flanks exchanged (half a turn)."""
+    from setupcheck.worm.best_cutter import Tolerance
     from setupcheck.worm.best_cutter import tolerances as found
 
-    return found(bench_of(drill), radius, budget=budget, insert=insert_of(drill, radius, kind))
+    right = found(bench_of(drill), radius, budget=budget, insert=insert_of(drill, radius, made))
+    if not isinstance(made, Points) or made.right == made.left:
+        return right
+    left = found(bench_of(drill), radius, budget=budget, insert=insert_of(drill, radius, made.other_way))
+    return {
+        name: Tolerance(min(one.below, left[name].below), min(one.above, left[name].above))
+        for name, one in right.items()
+    }
 
 
 def budget(asked: str, floor: Floor) -> float | Open:
@@ -42,7 +64,7 @@ def budget(asked: str, floor: Floor) -> float | Open:
 
 @in_range
 def tolerances(
-    drill: Drill, made_for: Cut, kind: str, budget: float, best: Recommendation, error: float
+    drill: Drill, made_for: Cut, made: Made, budget: float, best: Recommendation, error: float
 ) -> dict[str, Tolerance] | None:
     """What tilt, mid-plane, depth and turn of the insert may each be off alone, everything else as made for.
 
@@ -51,7 +73,7 @@ def tolerances(
     """
     if made_for.radius < best.floor or error > budget:
         return None
-    return _tolerances(drill, made_for.radius, kind, budget)
+    return _tolerances(drill, made_for.radius, made, budget)
 
 
 def _capped(size: float, name: str) -> float:
@@ -143,8 +165,10 @@ def depth_error(asked: str, cut: WheelCut, floor: Floor, early: float) -> float 
 
 
 @in_range
-def wander(drill: Drill, made_for: Cut, setting: Cut, kind: str, floor: Floor) -> Wander | Open:
-    """Contact of the right flank round the wheel: its ring at its worst eccentricity and lean, both high at one place.
+def wander(drill: Drill, made_for: Cut, setting: Cut, made: Made, floor: Floor) -> tuple[Wander, ...] | Open:
+    """Contact of a flank round the wheel: its ring at its worst eccentricity and lean, both high at one place.
+
+    One for both flanks; of a measured insert the left flank too, as a right one of the insert with its flanks exchanged.
 
     Source: worm.wander; the ledger, worst case.
     """
@@ -160,19 +184,21 @@ def wander(drill: Drill, made_for: Cut, setting: Cut, kind: str, floor: Floor) -
     if missing:
         return Open(missing)
     flank = bench_of(drill).flank
-    angle = ease_off(flank, insert_of(drill, made_for.radius, kind), setting).angle
     errors = RingError(eccentricity=offset.largest(), run_out=2.0 * drill.pair.rolling * math.tan(lean.largest()))
-    return round_the_wheel(flank, angle, film=drill.film, errors=errors)
+    unlike = isinstance(made, Points) and made.right != made.left
+    inserts = [insert_of(drill, made_for.radius, one) for one in ([made, made.other_way] if unlike else [made])]  # type: ignore[union-attr]
+    angles = [ease_off(flank, one, setting).angle for one in inserts]
+    return tuple(round_the_wheel(flank, angle, film=drill.film, errors=errors) for angle in angles)
 
 
-def wander_along(found: Wander) -> float:
+def wander_along(found: tuple[Wander, ...]) -> float:
     """How far the middle of the marking wanders along the face in a turn [mm]. Source: worm.wander."""
-    return found.along_face
+    return max(one.along_face for one in found)
 
 
-def wander_up(found: Wander) -> float:
+def wander_up(found: tuple[Wander, ...]) -> float:
     """How far it wanders up and down the flank in a turn [mm]. Source: worm.wander."""
-    return found.up_flank
+    return max(one.up_flank for one in found)
 
 
 _FOUND = {"found": "contact.tolerances"}
@@ -184,7 +210,7 @@ CONTACT_SETTING: tuple[Quantity, ...] = (
         "",
         0,
         tolerances,
-        {**MADE, "kind": "cutter.insert", "budget": "contact.budget", **BEST, "error": "contact.error"},
+        {**MADE, "made": "contact.made", "budget": "contact.budget", **BEST, "error": "contact.error"},
         "what the setting may be off at the planned radius",
     ),
     row("tilt", "arcmin", 1, tilt, _FOUND, "what the tilt may be off, whichever way"),

@@ -164,12 +164,4 @@ EXACT = (
     row("made_for", "", 0, made_for, {"pair": "contact.pair", **_CUT}, "setting that the insert is made for"),
     row("setting", "", 0, setting, {"pair": "contact.pair", **_CUT, **_FLOOR}, "setting of the cutter as planned"),
     row("gap", "", 0, gap, {"pair": "contact.pair", "blank": "contact.blank"}, "sections of the exact gap"),
-    row(
-        "insert",
-        "",
-        0,
-        insert,
-        {"gap": "contact.gap", "made_for": "contact.made_for", "kind": "cutter.insert"},
-        "profile of the insert as planned",
-    ),
 )

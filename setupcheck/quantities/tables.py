@@ -18,6 +18,7 @@ from setupcheck.quantities.exact_gap import EXACT
 from setupcheck.quantities.growing import GROWING
 from setupcheck.quantities.head_setting import HEAD
 from setupcheck.quantities.heat_checks import HEAT_CHECKS
+from setupcheck.quantities.insert_measured import MEASURED
 from setupcheck.quantities.inserts import INSERTS
 from setupcheck.quantities.joining import JOINING
 from setupcheck.quantities.joint_heat import HEAT
@@ -285,6 +286,7 @@ TABLES: tuple[Quantity, ...] = (
     *CONTACT_SETTING,
     *CONTACT_ADVICE,
     *INSERTS,
+    *MEASURED,
     *MESHING,
     *MARK,
     *WORM,

@@ -27,6 +27,10 @@ HEAD = (
     "exact gap, {contact.film} of blue, rigid, everything set as planned; # marked, . not; right is right seen from the "
     "+z face, gap up"
 )
+HEAD_MEASURED = (
+    "exact gap, insert as measured (each point within {insert.uncertainty}), {contact.film} of blue, rigid, set as planned; # "
+    "marked, . not; right is right seen from the +z face, gap up"
+)
 BENEATH: tuple[tuple[str, ...], ...] = (
     (
         "marked: {contact.share} of each flank, {contact.ends} of its ends; middle {contact.middle_right} and "
@@ -69,7 +73,7 @@ def contacts(found: Review) -> Iterator[str]:
     """One block for each cut of a worm wheel whose contact could be worked out; nothing where no job asks for it."""
     for number, (scope, cut, maps) in enumerate(worked_out(found)):
         yield from [""] * (number > 0)
-        (said,) = in_words(found, scope, ((HEAD,),)) or [""]
+        (said,) = in_words(found, scope, ((HEAD_MEASURED, HEAD),)) or [""]
         yield from wrap(f"CONTACT, op {scope.op}: {said}", rest="  ")
         yield from _drawn(found, cut, maps)
         for line in in_words(found, scope, BENEATH):

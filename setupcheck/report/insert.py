@@ -25,6 +25,14 @@ SHAPE: tuple[tuple[str, ...], ...] = (
         "it works from {insert.works_from} above its tip",
     ),
 )
+OFF: tuple[tuple[str, ...], ...] = (
+    (
+        "as measured it is off this profile by up to {insert.off_profile} square to the flank, {insert.off_height} above the "
+        "tip, {insert.off_where}; {insert.off_worst} with the uncertainty of a point, which is within {insert.uncertainty}",
+        "as measured it is off this profile by up to {insert.off_profile} square to the flank, {insert.off_height} above the "
+        "tip, {insert.off_where}; no uncertainty of its points is stated",
+    ),
+)
 GROUND: tuple[tuple[str, ...], ...] = (
     (
         "a wheel with an edge of {insert.largest_wheel} radius leaves 2 um in its hollow; take four fifths of that at most",
@@ -65,7 +73,7 @@ def inserts(found: Review) -> Iterator[str]:
         yield "  height above tip    full width"
         for height, width in _sizes(found, scope):
             yield f"{_length(found, height, 3):>18}{_length(found, width, 4):>14}"
-        for said in in_words(found, scope, (*SHAPE, *GROUND)):
+        for said in in_words(found, scope, (*SHAPE, *OFF, *GROUND)):
             yield from wrap(said, first="  - ", rest="    ")
 
 
@@ -107,7 +115,7 @@ def inserts_as_data(found: Review) -> list[dict[str, object]]:
             "points": [
                 {"height": _plain(h), "across": _plain(x), "along": _plain(y)} for h, x, y in _listed(found, scope)
             ],
-            "says": in_words(found, scope, (*SHAPE, *GROUND)),
+            "says": in_words(found, scope, (*SHAPE, *OFF, *GROUND)),
         }
         for scope, cut in drawn_inserts(found)
     ]

@@ -5,11 +5,16 @@ from __future__ import annotations
 from setupcheck.errors import SetupcheckError
 from setupcheck.flow import Review
 from setupcheck.quantities.book import Known, Open, Scope
+from setupcheck.quantities.contact import Points
 from setupcheck.quantities.drive import WheelCut
 from setupcheck.quantities.inserts import Drawn
 from setupcheck.report.drawings import InsertDrawing, draw_insert
 from setupcheck.report.insert import cutter_name, the_insert
+from setupcheck.report.joint import in_words
 from setupcheck.report.wording import clean
+
+NOTE = (("off by up to {insert.off_profile} at {insert.off_height}, {insert.off_where}",),)
+"""Line of the drawing where points are measured."""
 
 PAPERS = {"A4": (210.0, 297.0), "A3": (297.0, 420.0)}
 """Width and height of a sheet [mm]. Source: ISO 216."""
@@ -49,7 +54,20 @@ def _drawing(found: Review, scope: Scope, cut: WheelCut, scale: float) -> Insert
         pitch_width=width,
         right_angle=0.5 * angle,
         left_angle=0.5 * angle,
+        measured=_measured(found, scope, drawn.heights[-1]),
+        note=next(iter(in_words(found, scope, NOTE)), ""),
     )
+
+
+def _measured(found: Review, scope: Scope, top: float) -> list[tuple[float, float]]:
+    """Measured points that stand on the drawing: height above the tip and place across, positive on the right flank."""
+    answer = found.book.get("insert.measured", scope)
+    if not isinstance(answer, Known):
+        return []
+    points = answer.value
+    assert isinstance(points, Points)
+    flanks = ((1.0, points.right), (-1.0, points.left))
+    return [(h, sign * w) for sign, widths in flanks for h, w in zip(points.heights, widths, strict=True) if h <= top]
 
 
 def _known(found: Review, name: str, scope: Scope) -> object:

@@ -127,6 +127,15 @@ def envelope_insert(gap: Sections, cut: Cut) -> Insert:
     return _insert(heights, np.where(at <= start, peak, np.maximum(below, touched)))
 
 
+def flank_height(gap: Sections, cut: Cut) -> float:
+    """Height above the tip that the flank of the gap takes, up to its highest corner [mm]; profiles go on a little beyond.
+
+    Raises: ValueError for a cutter smaller than the worm.  Source: the frame of worm.plunge_gap.
+    """
+    made = _made_for(gap.pair, cut)
+    return made.radius - float(on_cutter(gap.pair, made, gap.r, gap.angle, gap.z)[0].min())
+
+
 def widened(gap: Sections, by: float) -> Sections:
     """The sections of a gap that is wider by so much along the rolling circle [mm], for backlash; both flanks turn alike.
 

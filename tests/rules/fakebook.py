@@ -146,6 +146,8 @@ QUANTITIES: Mapping[str, FakeQuantity] = {
         FakeQuantity("insert.rounding", "cut", "um", 2),
         FakeQuantity("insert.form_error", "cut", "um", 1),
         FakeQuantity("insert.taper", "cut", "um", 1),
+        FakeQuantity("insert.off_worst", "cut", "um", 1),
+        FakeQuantity("insert.off_limit", "cut", "um", 1),
         FakeQuantity("mesh.advice", "mesh", "", 0),
         FakeQuantity("mark.move", "mesh", "", 0),
         FakeQuantity("divide.advice", "setup", "", 0),

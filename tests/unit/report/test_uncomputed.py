@@ -8,7 +8,7 @@ import json
 import pytest
 from pydantic import BaseModel
 
-from setupcheck.jobfile import grinding, heating, marks, models, properties, setups, worm
+from setupcheck.jobfile import grinding, heating, insert_profile, marks, models, properties, setups, worm
 from setupcheck.report.json import as_json
 from setupcheck.report.text import as_text
 from setupcheck.report.uncomputed import NOT_LOOKED_AT, in_lines, uncomputed
@@ -34,6 +34,7 @@ READ = {
     "Mark": "seen_from right left on_teeth film",
     "Spot": "at towards height share",
     "Cutter": "kind bar_diameter overhang",
+    "InsertProfile": "heights widths right left uncertainty",
     "Grinding": "wheel_radius step form_error stop_error way shank_side touched_at",
     "Machine": "kind worm_ratio axis_runout hole_circles",
     "Distance": "from_ length",
@@ -69,7 +70,7 @@ READ = {
 
 RECORDS = {
     record.__name__: record  # not the name it is found under: some have a second one
-    for module in (grinding, models, properties, setups, heating, worm, marks)
+    for module in (grinding, insert_profile, models, properties, setups, heating, worm, marks)
     for record in vars(module).values()
     if inspect.isclass(record)
     and issubclass(record, BaseModel)
