@@ -32,12 +32,12 @@ TEXTS = {
 ROTATOR, SPINDLE = TEXTS
 MINUTE = math.radians(1.0 / 60.0)
 FILM = 0.006
-FROM = "housing: grey-iron}"
+FROM = "housing: grey-iron"
 
 
 def with_mark(route: str, mark: str) -> str:
     assert TEXTS[route].count(FROM) == 1
-    return TEXTS[route].replace(FROM, f"housing: grey-iron, mark: {{{mark}}}}}")
+    return TEXTS[route].replace(FROM, f"housing: grey-iron, mark: {{{mark}}}")
 
 
 def judged(route: str, mark: str) -> Review:
@@ -60,7 +60,9 @@ def answer(found: Review, name: str, kind: str = "mesh") -> object:
 @cache
 def model(route: str) -> tuple[Flank, Flank, Insert, Cut]:
     """Both flanks, insert and setting of a job, from its own numbers."""
-    text = TEXTS[route].replace(FROM, "housing: grey-iron, contact: exact}")
+    text = TEXTS[route]
+    if "contact: exact" not in text:
+        text = text.replace(FROM, "housing: grey-iron, contact: exact")
     book = review(read_job_text(text, "job.yaml")).book
     scope = next(s for s in book.instances("cut") if isinstance(book.get("contact.insert", s), Known))
     got = {}
