@@ -8,6 +8,7 @@ from __future__ import annotations
 
 import math
 from collections.abc import Callable, Iterator, Mapping, Sequence
+from contextlib import ContextDecorator
 from dataclasses import field
 
 from setupcheck.record import record
@@ -70,6 +71,22 @@ Answer = Known | Open | None
 
 class OutOfRange(ValueError):
     """Raised by a formula outside its stated validity."""
+
+
+class _InRange(ContextDecorator):
+    """See `in_range`."""
+
+    def __enter__(self) -> None:
+        pass
+
+    def __exit__(self, kind: type[BaseException] | None, why: BaseException | None, _: object) -> None:
+        if isinstance(why, ValueError):
+            raise OutOfRange(str(why)) from None
+
+
+in_range = _InRange()
+"""A leaf refuses sizes with a ValueError that says what is wrong with them: here that is why a quantity is open. Stands round
+the calls of the leaf, or as a decorator round a formula that does nothing else."""
 
 
 @record

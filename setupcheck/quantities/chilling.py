@@ -7,7 +7,7 @@ from setupcheck.jobfile.models import Round
 from setupcheck.jobfile.setups import Join
 from setupcheck.physics.heating import DULL, Ring, cooled_temperature
 from setupcheck.physics.materials import expansion_for
-from setupcheck.quantities.book import Known, Open, OutOfRange, Quantity
+from setupcheck.quantities.book import Known, Open, Quantity, in_range
 from setupcheck.quantities.shop import Floor
 from setupcheck.quantities.stuff import material_of
 from setupcheck.quantities.typical import typical
@@ -48,7 +48,7 @@ def seat_of(floor: Floor, join: Join, emissivity: float) -> Ring | Open | None:
     found = material_of(floor, ref.part)
     if isinstance(found, Open):
         return found
-    try:
+    with in_range:
         return Ring(
             bore=seat.hole or 0.0,
             outside=seat.diameter.value,
@@ -57,8 +57,6 @@ def seat_of(floor: Floor, join: Join, emissivity: float) -> Ring | Open | None:
             specific_heat=found.specific_heat.value,
             emissivity=emissivity,
         )
-    except ValueError as why:
-        raise OutOfRange(str(why)) from None
 
 
 def shaft_gain(floor: Floor, join: Join, op: int) -> float | Open | None:

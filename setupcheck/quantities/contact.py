@@ -9,10 +9,10 @@ from collections.abc import Sequence
 from functools import lru_cache
 from typing import TYPE_CHECKING
 
-from setupcheck.quantities.book import Open, OutOfRange, Quantity
+from setupcheck.quantities.book import Open, OutOfRange, Quantity, in_range
 from setupcheck.quantities.cutter_shape import USUAL_FILM
 from setupcheck.quantities.drive import WheelCut
-from setupcheck.quantities.exact_gap import in_range, row
+from setupcheck.quantities.exact_gap import row
 from setupcheck.quantities.shop import Floor
 from setupcheck.record import record
 

@@ -6,10 +6,10 @@ import math
 from typing import TYPE_CHECKING
 
 from setupcheck.notation import show, show_angle
-from setupcheck.quantities.book import Quantity
+from setupcheck.quantities.book import Quantity, in_range
 from setupcheck.quantities.contact import Drill, Made, Points, bench_of, best_of, radius_step, run
 from setupcheck.quantities.drive import WheelCut
-from setupcheck.quantities.exact_gap import in_range, row
+from setupcheck.quantities.exact_gap import row
 from setupcheck.quantities.shop import Floor
 
 if TYPE_CHECKING:  # imported where they are used: no other review needs them

@@ -13,7 +13,7 @@ from setupcheck.ledger.account import Account
 from setupcheck.ledger.figures import MidPlane
 from setupcheck.ledger.route import State
 from setupcheck.quantities.backlash import depth_of_cut
-from setupcheck.quantities.book import Open, Quantity
+from setupcheck.quantities.book import Open, Quantity, in_range
 from setupcheck.quantities.contact import (
     ASKED,
     BEST,
@@ -29,7 +29,7 @@ from setupcheck.quantities.contact import (
     insert_of,
 )
 from setupcheck.quantities.drive import WheelCut
-from setupcheck.quantities.exact_gap import in_range, row
+from setupcheck.quantities.exact_gap import row
 from setupcheck.quantities.shop import Floor
 from setupcheck.quantities.stacks import mid_plane
 

@@ -5,7 +5,7 @@ from __future__ import annotations
 import math
 
 from setupcheck.jobfile.models import Round, Throat
-from setupcheck.quantities.book import Open, OutOfRange, Quantity
+from setupcheck.quantities.book import Open, OutOfRange, Quantity, in_range
 from setupcheck.quantities.drive import WheelCut, drive, wheel_cut
 from setupcheck.quantities.scopes import CutEntry
 from setupcheck.quantities.shop import Floor
@@ -67,7 +67,7 @@ def radius(cut: WheelCut) -> float:
 def smallest_radius(cut: WheelCut) -> float:
     """Tip radius below which the worm rides on the ends of the teeth [mm]: zero crowning. Source: worm.cutter."""
     d = cut.drive
-    try:
+    with in_range:
         return fly.smallest_radius(
             pitch_diameter=d.pitch_diameter,
             worm_tip_diameter=d.tip_diameter,
@@ -77,14 +77,12 @@ def smallest_radius(cut: WheelCut) -> float:
             gap_arc=d.thread,
             clearance=max(cut.clearance, 0.0),
         )
-    except ValueError as why:
-        raise OutOfRange(str(why)) from None
 
 
 def shape(cut: WheelCut) -> Shape:
     """Crowning and twist of the flank, gap as wide as the thread. Source: worm.cutter (second order, near the mid-plane)."""
     d = cut.drive
-    try:
+    with in_range:
         over = fly.oversize(
             cutter_radius=cut.radius, worm_tip_diameter=d.tip_diameter, clearance=max(cut.clearance, 0.0)
         )
@@ -97,8 +95,6 @@ def shape(cut: WheelCut) -> Shape:
             oversize=over,
         )
         made = Shape(cut, fly.crowning(plunge), fly.twist(plunge))
-    except ValueError as why:
-        raise OutOfRange(str(why)) from None
     if made.twist < 0.0:  # the second order says nothing of such a flank
         raise OutOfRange("the thread is too thick for this wheel: its flank has no twist that could be computed")
     return made
@@ -134,7 +130,7 @@ def contact_area(shape: Shape, half_face: float, film: float) -> float | None:
     if shape.crowning <= 0.0:
         return None
     d = shape.cut.drive
-    try:
+    with in_range:
         return fly.contact_share(
             film,
             crowning=shape.crowning,
@@ -142,8 +138,6 @@ def contact_area(shape: Shape, half_face: float, film: float) -> float | None:
             lead_angle=d.lead_angle,
             face_width=2.0 * half_face,
         )
-    except ValueError as why:
-        raise OutOfRange(str(why)) from None
 
 
 def contact_length(shape: Shape, half_face: float, film: float) -> float | None:
@@ -226,7 +220,7 @@ def insert_width(cut: WheelCut, gap_arc: float, *, height: float, tilt: float) -
     Raises: OutOfRange for sizes that give no insert.  Source: worm.insert.
     """
     d = cut.drive
-    try:
+    with in_range:
         return insert_widths(
             [height],
             axial_module=d.module,
@@ -239,8 +233,6 @@ def insert_width(cut: WheelCut, gap_arc: float, *, height: float, tilt: float) -
             tilt=tilt,
             cutter_radius=cut.radius,
         )[0]
-    except ValueError as why:
-        raise OutOfRange(str(why)) from None
 
 
 def early_touch(cut: WheelCut, floor: Floor) -> float | Open | None:
@@ -269,10 +261,8 @@ def early_touch(cut: WheelCut, floor: Floor) -> float | Open | None:
         return Open((f"parts.{part}.surfaces",), "no rim is drawn over the throat")
     height = (max(rims) - node.diameter) / 2.0
     half = math.sqrt(max(node.radius**2 - (node.radius - height) ** 2, 0.0))
-    try:
+    with in_range:
         return touched_early(throat_radius=node.radius, cutter_radius=cut.radius, throat_width=2.0 * half)
-    except ValueError as why:
-        raise OutOfRange(str(why)) from None
 
 
 def overhang(entry: CutEntry, floor: Floor) -> float | Open | None:

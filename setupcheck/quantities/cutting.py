@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from setupcheck.quantities.book import Open, OutOfRange, Quantity
+from setupcheck.quantities.book import Open, Quantity, in_range
 from setupcheck.quantities.scopes import CutEntry
 
 
@@ -17,10 +17,8 @@ def passes_left(entry: CutEntry, path: str) -> float | Open | None:
         return None
     if entry.cut.depth is None:
         return Open((f"{path}.depth",))
-    try:
+    with in_range:
         return left_by_passes(entry.cut.depth, entry.cut.passes)
-    except ValueError as why:
-        raise OutOfRange(str(why)) from None
 
 
 def last_pass(entry: CutEntry) -> float | None:

@@ -5,7 +5,7 @@ from __future__ import annotations
 from setupcheck.division.methods import circles_that_fit, holes_left_over, rounded_settings
 from setupcheck.jobfile.setups import Divide, Setup, Waves
 from setupcheck.ledger.teeth import folded
-from setupcheck.quantities.book import Known, Open, OutOfRange, Quantity
+from setupcheck.quantities.book import Known, Open, Quantity, in_range
 from setupcheck.quantities.dividing import typical_errors
 from setupcheck.quantities.route import machine_of
 from setupcheck.quantities.shop import Floor
@@ -100,10 +100,8 @@ def step(setup: Setup) -> float | None:
 
 def step_error(count: int, step: float) -> float:
     """Largest error of an absolute setting rounded to the step [rad]; nothing adds up round the turn. Source: arithmetic."""
-    try:
+    with in_range:
         return max(abs(error) for error in rounded_settings(count, step))
-    except ValueError as why:
-        raise OutOfRange(str(why)) from None
 
 
 def setting_error(setup: Setup) -> float | Known | None:

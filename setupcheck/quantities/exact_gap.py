@@ -6,13 +6,11 @@ A map of contact takes longer than the rest of a review, so nothing here is work
 from __future__ import annotations
 
 import math
-from collections.abc import Callable
-from functools import wraps
-from typing import TYPE_CHECKING, ParamSpec, TypeVar
+from typing import TYPE_CHECKING
 
 from setupcheck.jobfile.models import Round, Throat
 from setupcheck.jobfile.setups import Setup
-from setupcheck.quantities.book import Open, OutOfRange, Quantity
+from setupcheck.quantities.book import Open, Quantity, in_range
 from setupcheck.quantities.drive import WheelCut
 from setupcheck.quantities.shop import Floor
 
@@ -21,22 +19,6 @@ if TYPE_CHECKING:  # imported where they are used: no other review needs them
     from setupcheck.worm.gap_insert import Sections
     from setupcheck.worm.plunge_gap import Cut, Insert
     from setupcheck.worm.wheel_flank import Blank
-
-P = ParamSpec("P")
-T = TypeVar("T")
-
-
-def in_range(of: Callable[P, T]) -> Callable[P, T]:
-    """A ValueError of a leaf, which says what is wrong with the sizes, becomes the reason why a quantity is open."""
-
-    @wraps(of)
-    def told(*args: P.args, **kwargs: P.kwargs) -> T:
-        try:
-            return of(*args, **kwargs)
-        except ValueError as why:
-            raise OutOfRange(str(why)) from None
-
-    return told
 
 
 def asked(floor: Floor) -> str | None:

@@ -8,7 +8,7 @@ from functools import cache
 from setupcheck.errors import SetupcheckError
 from setupcheck.physics import iso_286
 from setupcheck.physics.iso_286 import Cell, Limits, Tables
-from setupcheck.quantities.book import OutOfRange
+from setupcheck.quantities.book import in_range
 from setupcheck.shipped import shipped
 from setupcheck.yamlfile import parse_plain, read_text
 
@@ -43,10 +43,8 @@ def limits(nominal: float, tolerance_class: str) -> Limits:
     >>> limits(32.0, "H6")
     Limits(lower=0.0, upper=0.016)
     """
-    try:
+    with in_range:
         return iso_286.limits(tables(), nominal, tolerance_class)
-    except ValueError as why:
-        raise OutOfRange(str(why)) from None
 
 
 def basis(nominal: float, tolerance_class: str) -> tuple[Cell, ...]:
@@ -55,10 +53,8 @@ def basis(nominal: float, tolerance_class: str) -> tuple[Cell, ...]:
     >>> [(cell.column, cell.microns, cell.source) for cell in basis(32.0, "H6")]
     [('IT6', 16, 'GB/T 1800.3-1998, table of standard tolerances; same in a tool catalogue, p.1052')]
     """
-    try:
+    with in_range:
         return iso_286.basis(tables(), nominal, tolerance_class)
-    except ValueError as why:
-        raise OutOfRange(str(why)) from None
 
 
 def _rows(data: Mapping[str, object], name: str) -> list[Mapping[str, object]]:

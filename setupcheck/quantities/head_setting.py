@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from setupcheck.jobfile.models import Dimension
 from setupcheck.jobfile.setups import Setup
-from setupcheck.quantities.book import Open, OutOfRange, Quantity
+from setupcheck.quantities.book import Open, Quantity, in_range
 from setupcheck.quantities.cutter_shape import Shape
 from setupcheck.quantities.drive import middle
 from setupcheck.quantities.shop import Floor
@@ -27,7 +27,7 @@ def worst_error(floor: Floor, set_angle: float, needed_angle: float, allowed: fl
         return Open((*missing, *wobble.missing), wobble.because)
     if job.mesh.shaft_angle_error is None:
         return Open(missing)
-    try:
+    with in_range:
         return tilt_error(
             set_angle=set_angle,
             needed_angle=needed_angle,
@@ -35,8 +35,6 @@ def worst_error(floor: Floor, set_angle: float, needed_angle: float, allowed: fl
             shaft_angle=job.mesh.shaft_angle_error,
             wobble=wobble,
         ).worst
-    except ValueError as why:
-        raise OutOfRange(str(why)) from None
 
 
 def _wobble(floor: Floor) -> float | Open:
@@ -85,10 +83,8 @@ def _pivot(setup: Setup) -> Dimension | None:
 
 def _shift(tilt: float, distance: float) -> Shift:
     """Both shifts by tilting. Raises: OutOfRange for a tilt beyond 45 deg.  Source: worm.tilt."""
-    try:
+    with in_range:
         return shift_after_tilt(abs(tilt), pivot_distance=distance)
-    except ValueError as why:
-        raise OutOfRange(str(why)) from None
 
 
 def shift_height(setup: Setup) -> float | None:
@@ -118,10 +114,8 @@ def blocks(setup: Setup) -> float | None:
     head = setup.head
     if head is None or head.sine_bar is None:
         return None
-    try:
+    with in_range:
         return sine_bar_stack(abs(head.tilt), bar=head.sine_bar)
-    except ValueError as why:
-        raise OutOfRange(str(why)) from None
 
 
 def bar_miss(setup: Setup) -> float | Open | None:
@@ -132,10 +126,8 @@ def bar_miss(setup: Setup) -> float | Open | None:
     missing = tuple(f"setups.{setup.op}.head.{key}" for key in ("sine_bar", "blocks") if getattr(head, key) is None)
     if head.sine_bar is None or head.blocks is None:
         return Open(missing)
-    try:
+    with in_range:
         return abs(sine_bar_angle(middle(head.blocks), bar=head.sine_bar) - abs(head.tilt))
-    except ValueError as why:
-        raise OutOfRange(str(why)) from None
 
 
 _SETUP = {"setup": ":"}

@@ -10,10 +10,10 @@ from typing import TYPE_CHECKING
 
 from setupcheck.jobfile.types import INCH, size_shown
 from setupcheck.quantities import exact_gap
-from setupcheck.quantities.book import Open, OutOfRange, Quantity
+from setupcheck.quantities.book import Open, OutOfRange, Quantity, in_range
 from setupcheck.quantities.contact import Drill, Made, Points, bench_of, insert_of
 from setupcheck.quantities.drive import WheelCut
-from setupcheck.quantities.exact_gap import in_range, row
+from setupcheck.quantities.exact_gap import row
 from setupcheck.quantities.shop import Floor
 from setupcheck.record import record
 

@@ -9,9 +9,8 @@ import math
 from typing import TYPE_CHECKING
 
 from setupcheck.jobfile.grinding import Grinding
-from setupcheck.quantities.book import Open, OutOfRange, Quantity
+from setupcheck.quantities.book import Open, OutOfRange, Quantity, in_range
 from setupcheck.quantities.drive import WheelCut, middle
-from setupcheck.quantities.exact_gap import in_range
 from setupcheck.record import record
 
 if TYPE_CHECKING:  # imported where they are used: no other review needs them

@@ -9,7 +9,7 @@ from setupcheck.jobfile.setups import Join
 from setupcheck.ledger.account import Account
 from setupcheck.ledger.causes import Cause
 from setupcheck.notation import show
-from setupcheck.quantities.book import Known, Open, OutOfRange, Quantity
+from setupcheck.quantities.book import Known, Open, Quantity, in_range
 from setupcheck.quantities.shop import Floor
 from setupcheck.quantities.sized import at_reference
 from setupcheck.quantities.typical import typical
@@ -169,11 +169,9 @@ def needed(floor: Floor, join: Join, most: float, sizes: JointSizes, shaft_at: f
             shaft_temperature=shaft_at,
         )
 
-    try:
+    with in_range:
         warm = at(hub.heating.low)
         return warm if warm >= REFERENCE_TEMPERATURE else at(hub.heating.high)
-    except ValueError as why:
-        raise OutOfRange(str(why)) from None
 
 
 def heat_error(heat: Heat) -> tuple[float, str] | None:

@@ -17,7 +17,7 @@ from setupcheck.physics.heating import (
     lowest_hub_temperature,
     shoulder_gap,
 )
-from setupcheck.quantities.book import Open, OutOfRange, Quantity
+from setupcheck.quantities.book import Open, OutOfRange, Quantity, in_range
 from setupcheck.quantities.chilling import contraction, out_of_the_cold, seat_of
 from setupcheck.quantities.joining import JointSizes
 from setupcheck.quantities.pairing import Pair
@@ -45,7 +45,7 @@ def ring_of(pair: Pair, emissivity: float = DULL) -> Ring:
         raise OutOfRange(f"an outside of {thinnest:g} mm is no hub on a joint of {pair.diameter:g} mm")
     length = math.fsum(s.length for s in pair.sections)
     squares = math.fsum(s.length * s.outside**2 for s in pair.sections) / length
-    try:
+    with in_range:
         return Ring(
             bore=pair.diameter,
             outside=math.sqrt(squares),
@@ -54,8 +54,6 @@ def ring_of(pair: Pair, emissivity: float = DULL) -> Ring:
             specific_heat=pair.hub.specific_heat.value,
             emissivity=emissivity,
         )
-    except ValueError as why:
-        raise OutOfRange(str(why)) from None
 
 
 def carry_loss(

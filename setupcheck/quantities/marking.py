@@ -15,7 +15,7 @@ from setupcheck.jobfile.worm import Mesh
 from setupcheck.ledger.figures import alternatives
 from setupcheck.notation import show, show_angle
 from setupcheck.quantities import cutter_shape, exact_gap
-from setupcheck.quantities.book import Open, Quantity
+from setupcheck.quantities.book import Open, Quantity, in_range
 from setupcheck.quantities.drive import Drive, WheelCut, drive, wheel_cut
 from setupcheck.quantities.judged import Result
 from setupcheck.quantities.placing import shim_for
@@ -68,7 +68,7 @@ def cutting(floor: Floor, mesh: Mesh) -> Cutting | Open | None:
     return insert if isinstance(insert, Open) else Cutting(made, insert)
 
 
-@exact_gap.in_range
+@in_range
 def read(floor: Floor, mesh: Mesh, cutting: Cutting) -> Told | Open:
     """What the marks of both flanks tell.
 

@@ -9,7 +9,7 @@ from setupcheck.notation import Roughness
 from setupcheck.physics import interference as fits
 from setupcheck.physics.heating import interference_at
 from setupcheck.physics.materials import Material, Question, expansion_for, modulus_for
-from setupcheck.quantities.book import Open, OutOfRange
+from setupcheck.quantities.book import Open, in_range
 from setupcheck.quantities.contents import material_family
 from setupcheck.quantities.friction import Friction, friction
 from setupcheck.quantities.joining import JointSizes
@@ -55,7 +55,7 @@ class Pair:
 
     def joints(self, question: Question) -> tuple[fits.Joint, ...]:
         """Each section with the moduli that are safe for a question. Raises: OutOfRange for sizes that are no joint."""
-        try:
+        with in_range:
             return tuple(
                 fits.Joint(
                     diameter=self.diameter,
@@ -68,8 +68,6 @@ class Pair:
                 )
                 for s in self.sections
             )
-        except ValueError as why:
-            raise OutOfRange(str(why)) from None
 
     def at(self, interference: float, question: Question, state: Warmth) -> float:
         """Interference when hub and shaft have their temperatures, expansions safe for the question [mm]."""

@@ -8,7 +8,7 @@ from setupcheck.jobfile.models import Dimension
 from setupcheck.jobfile.worm import Worm
 from setupcheck.ledger.account import Account
 from setupcheck.notation import show
-from setupcheck.quantities.book import Open, OutOfRange, Quantity
+from setupcheck.quantities.book import Open, OutOfRange, Quantity, in_range
 from setupcheck.quantities.causes import Entry, size_error
 from setupcheck.quantities.shop import Floor
 from setupcheck.quantities.worm_sizes import departure, settled, usual_root
@@ -202,7 +202,7 @@ def best_wire(floor: Floor, worm: Worm, found: Thread) -> float | Open:
     of = worm_thread(floor, worm)
     if isinstance(of, Open):
         return of
-    try:
+    with in_range:
         return wires.best_wire(
             starts=of.starts,
             axial_module=of.module,
@@ -210,8 +210,6 @@ def best_wire(floor: Floor, worm: Worm, found: Thread) -> float | Open:
             pressure_angle=of.pressure_angle,
             thread_thickness=found.middle,
         )
-    except ValueError as why:
-        raise OutOfRange(str(why)) from None
 
 
 def wire(worm: Worm, best: float) -> float:
@@ -226,7 +224,7 @@ def size_over_wires(floor: Floor, worm: Worm, found: Thread, wire: float) -> flo
         return of
     if worm.tip_diameter is None:
         return Open(("worm.tip_diameter",))
-    try:
+    with in_range:
         return wires.over_wires(
             starts=of.starts,
             axial_module=of.module,
@@ -236,8 +234,6 @@ def size_over_wires(floor: Floor, worm: Worm, found: Thread, wire: float) -> flo
             wire=wire,
             tip_diameter=worm.tip_diameter,
         ).size
-    except ValueError as why:
-        raise OutOfRange(str(why)) from None
 
 
 def which_groove(starts: float) -> str | None:

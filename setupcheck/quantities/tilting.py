@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from setupcheck.jobfile.reading import LoadedJob
 from setupcheck.jobfile.setups import Setup
-from setupcheck.quantities.book import Known, Open, OutOfRange, Quantity
+from setupcheck.quantities.book import Known, Open, Quantity, in_range
 from setupcheck.quantities.route import machine_of
 from setupcheck.quantities.shop import Floor
 from setupcheck.quantities.typical import head_uncertainty
@@ -84,13 +84,11 @@ def belongs_to(floor: Floor, set_angle: float, allowed: float) -> str | None:
     diameters = {"reference": reference, "root": reference - 2.4 * module}
     if worm.tip_diameter is not None:
         diameters["tip"] = worm.tip_diameter
-    try:
+    with in_range:
         return (
             whose_lead_angle(set_angle, diameters, starts=round(starts), axial_module=module, within=max(allowed, 3e-4))
             or "none"
         )
-    except ValueError as why:
-        raise OutOfRange(str(why)) from None
 
 
 def _places(floor: Floor, setup: Setup) -> tuple[str, str, str] | Open:
@@ -129,10 +127,8 @@ def lean(floor: Floor, setup: Setup) -> str | Open | None:
     if isinstance(places, Open):
         return places
     hand, nose, cutter = places
-    try:
+    with in_range:
         right = lean_is_right(setup.head.leans, hand=hand, nose_points=nose, cutter_stands=cutter)
-    except ValueError as why:
-        raise OutOfRange(str(why)) from None
     return "right" if right else "wrong"
 
 
@@ -149,10 +145,8 @@ def picture(floor: Floor, setup: Setup) -> str | Open | None:
     if isinstance(places, Open):
         return places
     hand, nose, cutter = places
-    try:
+    with in_range:
         return lean_in_words(hand=hand, nose_points=nose, cutter_stands=cutter)
-    except ValueError as why:
-        raise OutOfRange(str(why)) from None
 
 
 def twist(floor: Floor, error: float, allowed: float) -> float | None:
@@ -168,10 +162,8 @@ def twist(floor: Floor, error: float, allowed: float) -> float | None:
         return None
     ref = floor.loaded.ref(job.mesh.wheel)
     width = getattr(job.parts[ref.part].surfaces[ref.surface], "width", None)
-    try:
+    with in_range:
         return twist_over_face(error + allowed, face_width=width) if width else None
-    except ValueError as why:
-        raise OutOfRange(str(why)) from None
 
 
 _HERE = {"floor": "route.floor", "setup": ":"}

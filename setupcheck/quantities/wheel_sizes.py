@@ -8,7 +8,7 @@ from setupcheck.jobfile.models import Round
 from setupcheck.jobfile.worm import Mesh
 from setupcheck.notation import show
 from setupcheck.quantities.backlash import along_of, gap_of_insert
-from setupcheck.quantities.book import Open, OutOfRange, Quantity
+from setupcheck.quantities.book import Open, OutOfRange, Quantity, in_range
 from setupcheck.quantities.drive import Drive, WheelCut, drive, middle, wheel_cut
 from setupcheck.quantities.judged import Result
 from setupcheck.quantities.shop import Floor
@@ -50,12 +50,10 @@ def wheel(floor: Floor, mesh: Mesh) -> Wheel | Open | None:
 
 
 def _sizes(of: Wheel) -> geometry.WheelSizes:
-    try:
+    with in_range:
         return geometry.wheel_sizes(
             axial_module=of.module, reference_diameter=of.worm_diameter, wheel_teeth=of.teeth, shift=of.shift
         )
-    except ValueError as why:
-        raise OutOfRange(str(why)) from None
 
 
 def reference_circle(of: Wheel) -> float:
@@ -132,7 +130,7 @@ def reach(floor: Floor, of: Wheel, width: float) -> float | Open:
     missing = tuple(f"worm.{key}" for key in ("tip_diameter", "pressure_angle") if getattr(worm, key) is None)
     if worm.tip_diameter is None or worm.pressure_angle is None:
         return Open(missing)
-    try:
+    with in_range:
         found = geometry.contact_reach(
             starts=of.starts,
             axial_module=of.module,
@@ -144,8 +142,6 @@ def reach(floor: Floor, of: Wheel, width: float) -> float | Open:
             pressure_angle=worm.pressure_angle,
             face_width=width,
         )
-    except ValueError as why:
-        raise OutOfRange(str(why)) from None
     if found <= 0.0:
         raise OutOfRange("a worm of these sizes touches nothing of the wheel's teeth")
     return found
@@ -172,10 +168,8 @@ def thread_length(of: Wheel, reach: float) -> float:
 
 def older_length(of: Wheel) -> float:
     """Threaded length by the older rule [mm]: sqrt(da2^2 - d2^2). Source: worm.geometry (from memory)."""
-    try:
+    with in_range:
         return geometry.older_thread_length(throat_diameter=throat(of), wheel_diameter=of.diameter)
-    except ValueError as why:
-        raise OutOfRange(str(why)) from None
 
 
 def teeth(of: Wheel) -> float:
@@ -193,14 +187,12 @@ def fewest(floor: Floor, of: Wheel) -> float | Open:
     missing = tuple(f"worm.{key}" for key in ("tip_diameter", "pressure_angle") if getattr(worm, key) is None)
     if worm.tip_diameter is None or worm.pressure_angle is None:
         return Open(missing)
-    try:
+    with in_range:
         least = geometry.fewest_teeth(
             pressure_angle=worm.pressure_angle,
             shift=of.shift,
             addendum_factor=(worm.tip_diameter - of.worm_diameter) / (2.0 * of.module),
         )
-    except ValueError as why:
-        raise OutOfRange(str(why)) from None
     return float(max(math.ceil(least - 1e-9), 1))
 
 
@@ -247,15 +239,13 @@ def best_ball(floor: Floor) -> float | Open | None:
     found = drive(floor)
     if not isinstance(found, Drive):
         return found
-    try:
+    with in_range:
         return over_balls.best_ball(
             wheel_diameter=found.wheel_diameter,
             pressure_angle=found.pressure_angle,
             lead_angle=found.lead_angle,
             gap=_tight(found),
         )
-    except ValueError as why:
-        raise OutOfRange(str(why)) from None
 
 
 def _tight(found: Drive) -> float:
@@ -284,7 +274,7 @@ def over_planned(floor: Floor, mesh: Mesh, found: Drive) -> float | Open | None:
 
 def _over(floor: Floor, mesh: Mesh, found: Drive, gap: float) -> float:
     assert mesh.ball is not None
-    try:
+    with in_range:
         seat = over_balls.over_balls(
             starts=found.starts,
             axial_module=found.module,
@@ -294,8 +284,6 @@ def _over(floor: Floor, mesh: Mesh, found: Drive, gap: float) -> float:
             gap=gap,
             ball=mesh.ball,
         )
-    except ValueError as why:
-        raise OutOfRange(str(why)) from None
     if abs(seat.contact_diameter - found.wheel_diameter) > 1.8 * found.module:
         raise OutOfRange(f"a ball of {show(mesh.ball, 'mm', 3)} touches beside the flanks")
     return seat.size

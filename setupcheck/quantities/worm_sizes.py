@@ -10,7 +10,7 @@ from setupcheck.jobfile.models import Dimension, Toothing
 from setupcheck.jobfile.reading import LoadedJob
 from setupcheck.jobfile.worm import Worm
 from setupcheck.notation import show
-from setupcheck.quantities.book import Open, OutOfRange, Quantity
+from setupcheck.quantities.book import Open, Quantity, in_range
 from setupcheck.quantities.shop import Floor
 from setupcheck.worm import candidates as usual
 from setupcheck.worm import geometry
@@ -151,20 +151,16 @@ def tip_angle(floor: Floor, worm: Worm) -> float | Open:
 
 
 def _angle(found: tuple[float, ...], diameter: float) -> float:
-    try:
+    with in_range:
         return geometry.lead_angle(starts=round(found[0]), axial_module=found[1], diameter=diameter)
-    except ValueError as why:
-        raise OutOfRange(str(why)) from None
 
 
 def normal_angle(worm: Worm, lead_angle: float) -> float | Open:
     """Pressure angle in the normal section [rad]: tan alpha_n = tan alpha cos g. Source: Mott, Machine Elements, eq. 8-39."""
     if worm.pressure_angle is None:
         return Open(("worm.pressure_angle",))
-    try:
+    with in_range:
         return geometry.normal_pressure_angle(worm.pressure_angle, lead_angle)
-    except ValueError as why:
-        raise OutOfRange(str(why)) from None
 
 
 def usual_tip(floor: Floor) -> float | Open:
@@ -178,10 +174,8 @@ def usual_root(floor: Floor) -> float | Open:
     found = settled(floor, "reference_diameter", "axial_module")
     if isinstance(found, Open):
         return found
-    try:
+    with in_range:
         return geometry.worm_sizes(axial_module=found[1], reference_diameter=found[0]).root_diameter
-    except ValueError as why:
-        raise OutOfRange(str(why)) from None
 
 
 def departure(floor: Floor, worm: Worm, low: float) -> float | Open | None:
@@ -199,7 +193,7 @@ def departure(floor: Floor, worm: Worm, low: float) -> float | Open | None:
         return Open((*found.missing, *missing))
     if missing or worm.tip_diameter is None or worm.pressure_angle is None:
         return Open(missing)
-    try:
+    with in_range:
         return off_straight(
             worm.profile,
             starts=round(found[0]),
@@ -210,8 +204,6 @@ def departure(floor: Floor, worm: Worm, low: float) -> float | Open | None:
             low=low,
             high=worm.tip_diameter,
         )
-    except ValueError as why:
-        raise OutOfRange(str(why)) from None
 
 
 def told(floor: Floor, name: str, value: float) -> str:
