@@ -11,7 +11,6 @@ from typing import TYPE_CHECKING
 
 from setupcheck.ledger.account import Account
 from setupcheck.ledger.figures import MidPlane
-from setupcheck.ledger.route import State
 from setupcheck.quantities.backlash import depth_of_cut
 from setupcheck.quantities.book import Open, Quantity, in_range
 from setupcheck.quantities.contact import (
@@ -30,6 +29,7 @@ from setupcheck.quantities.contact import (
 )
 from setupcheck.quantities.drive import WheelCut
 from setupcheck.quantities.exact_gap import row
+from setupcheck.quantities.head_setting import where_it_works
 from setupcheck.quantities.shop import Floor
 from setupcheck.quantities.stacks import mid_plane
 
@@ -118,23 +118,12 @@ def tilt_error(asked: str, worst: float) -> float:
     return worst
 
 
-def _where_it_works(floor: Floor) -> tuple[State, State] | Open:
-    """The finished teeth and the axis they work on, both of one body."""
-    job = floor.loaded.job
-    if job.mesh is None or job.place is None or job.place.axis is None:
-        return Open(("place.axis",))
-    teeth, axis = floor.now(floor.loaded.ref(job.mesh.wheel)), floor.now(floor.loaded.ref(job.place.axis))
-    if teeth is None or axis is None or floor.body(teeth.part) is not floor.body(axis.part):
-        return Open(("place.axis",), "wheel and axis are never one piece in this route")
-    return teeth, axis
-
-
 def mid_plane_error(asked: str, floor: Floor) -> float | Open:
     """Largest distance of the cutter's plane from the worm's axis, worst tooth [mm]: mid-plane as found, sizes, lean.
 
     What the requirement `mid-plane` computes, asked or not.  Source: the ledger, worst case.
     """
-    place, found = floor.loaded.job.place, _where_it_works(floor)
+    place, found = floor.loaded.job.place, where_it_works(floor)
     if isinstance(found, Open):
         return found
     if place is None or place.worm_axis is None:
@@ -175,7 +164,7 @@ def wander(drill: Drill, made_for: Cut, setting: Cut, made: Made, floor: Floor) 
     from setupcheck.worm.ease_off import ease_off
     from setupcheck.worm.wander import RingError, round_the_wheel
 
-    found = _where_it_works(floor)
+    found = where_it_works(floor)
     if isinstance(found, Open):
         return found
     teeth, axis = found

@@ -4,9 +4,10 @@ from __future__ import annotations
 
 import math
 
-from setupcheck.jobfile.models import Round, Throat
+from setupcheck.jobfile.models import Throat
 from setupcheck.quantities.book import Open, OutOfRange, Quantity, in_range
 from setupcheck.quantities.drive import WheelCut, drive, wheel_cut
+from setupcheck.quantities.joint_shape import rim_over
 from setupcheck.quantities.scopes import CutEntry
 from setupcheck.quantities.shop import Floor
 from setupcheck.record import record
@@ -248,18 +249,10 @@ def early_touch(cut: WheelCut, floor: Floor) -> float | Open | None:
         return None
     if cut.cut.depth_from.tool == "standing":
         return 0.0
-    rims = [
-        s.diameter.value
-        for name, s in floor.loaded.job.parts[part].surfaces.items()
-        if isinstance(s, Round)
-        and s.kind == "cylinder"
-        and s.made != "stock"
-        and s.low < node.at < s.high
-        and (part, name) not in floor.removed
-    ]
-    if not rims:
+    rim = rim_over(floor, part, node.at)
+    if rim is None:
         return Open((f"parts.{part}.surfaces",), "no rim is drawn over the throat")
-    height = (max(rims) - node.diameter) / 2.0
+    height = (rim - node.diameter) / 2.0
     half = math.sqrt(max(node.radius**2 - (node.radius - height) ** 2, 0.0))
     with in_range:
         return touched_early(throat_radius=node.radius, cutter_radius=cut.radius, throat_width=2.0 * half)

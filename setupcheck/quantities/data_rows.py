@@ -8,12 +8,20 @@ from setupcheck.errors import SetupcheckError
 from setupcheck.notation import nearest
 from setupcheck.physics.materials import EVIDENCE, Range, Value
 from setupcheck.record import record
-from setupcheck.yamlfile import Data, Path, Tree
+from setupcheck.yamlfile import Data, Tree, parse_plain
 
 
-def wrong(tree: Tree, path: Path, problem: str) -> SetupcheckError:
-    """The error at a place of a file: `materials.yaml:9  materials.C45.density is missing`."""
-    return SetupcheckError(f"{tree.file}:{tree.key_place(path).line}  {tree.dotted(path, missing=True)} {problem}")
+def rows(text: str, file: str, *, section: str, format: int) -> dict[str, Row]:
+    """The entries of a table by name, in the order of the file.
+
+    Raises: JobError for broken YAML, SetupcheckError for another format or a section that is no map.
+    """
+    tree = parse_plain(text, file)
+    data = tree.data
+    listed = data.get(section) if isinstance(data, dict) and data.get("format") == format else None
+    if not isinstance(listed, dict):
+        raise SetupcheckError(f"{file}: 'format: {format}' and a map '{section}' are needed")
+    return {name: Row(tree, section, name, row) for name, row in listed.items()}
 
 
 @record
@@ -29,7 +37,10 @@ class Row:
     row: Data
 
     def wrong(self, key: str, problem: str) -> SetupcheckError:
-        return wrong(self.tree, (self.section, self.name, key) if key else (self.section, self.name), problem)
+        """The error at a key, or at the entry: `materials.yaml:9  materials.C45.density is missing`."""
+        path = (self.section, self.name, key) if key else (self.section, self.name)
+        place = f"{self.tree.file}:{self.tree.key_place(path).line}"
+        return SetupcheckError(f"{place}  {self.tree.dotted(path, missing=True)} {problem}")
 
     def has_only(self, keys: Collection[str], of: str) -> None:
         """Refuses an entry that is no map, and every key that is none of an entry's; `of` names what it is one of."""

@@ -8,10 +8,11 @@ from __future__ import annotations
 import math
 from typing import TYPE_CHECKING
 
-from setupcheck.jobfile.models import Round, Throat
+from setupcheck.jobfile.models import Throat
 from setupcheck.jobfile.setups import Setup
 from setupcheck.quantities.book import Open, Quantity, in_range
 from setupcheck.quantities.drive import WheelCut
+from setupcheck.quantities.joint_shape import rim_over
 from setupcheck.quantities.shop import Floor
 
 if TYPE_CHECKING:  # imported where they are used: no other review needs them
@@ -60,27 +61,18 @@ def blank(asked: str, cut: WheelCut, floor: Floor) -> Blank | Open:
         return Open((f"{path}.{d.wheel.surface}.width",))
     middle = part.surfaces[d.wheel.surface].at  # type: ignore[union-attr]
     throats = [s for s in part.surfaces.values() if isinstance(s, Throat)]
-    rims = [
-        s.diameter.value
-        for name, s in part.surfaces.items()
-        if isinstance(s, Round)
-        and s.kind == "cylinder"
-        and s.made != "stock"
-        and s.low < middle < s.high
-        and (d.wheel.part, name) not in floor.removed
-    ]
+    rim = rim_over(floor, d.wheel.part, middle)
     if throats:
         throat = min(throats, key=lambda s: abs(s.at - middle))
-        outside = max(rims) if rims else None
         return Blank(
             face_width=d.face_width,
             throat_diameter=throat.diameter,
             throat_radius=throat.radius,
-            outside_diameter=outside if outside is not None and outside > throat.diameter else None,
+            outside_diameter=rim if rim is not None and rim > throat.diameter else None,
         )
-    if not rims:
+    if rim is None:
         return Open((path,), f"neither a throat nor a rim is drawn over the teeth of {d.wheel.part}")
-    return Blank(face_width=d.face_width, throat_diameter=max(rims))
+    return Blank(face_width=d.face_width, throat_diameter=rim)
 
 
 def needed_tilt(pair: Pair) -> float:

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from setupcheck.jobfile.models import Dimension
 from setupcheck.jobfile.setups import Setup
+from setupcheck.ledger.route import State
 from setupcheck.quantities.book import Open, Quantity, in_range
 from setupcheck.quantities.cutter_shape import Shape
 from setupcheck.quantities.drive import middle
@@ -37,15 +38,23 @@ def worst_error(floor: Floor, set_angle: float, needed_angle: float, allowed: fl
         ).worst
 
 
-def _wobble(floor: Floor) -> float | Open:
-    """Largest lean of the finished teeth to the axis they work on [rad]. Source: the ledger."""
+def where_it_works(floor: Floor) -> tuple[State, State] | Open:
+    """The finished teeth and the axis they work on, both of one body. Source: the route, `place.axis`."""
     job = floor.loaded.job
     if job.mesh is None or job.place is None or job.place.axis is None:
         return Open(("place.axis",))
     teeth, axis = floor.now(floor.loaded.ref(job.mesh.wheel)), floor.now(floor.loaded.ref(job.place.axis))
     if teeth is None or axis is None or floor.body(teeth.part) is not floor.body(axis.part):
         return Open(("place.axis",), "wheel and axis are never one piece in this route")
-    lean = teeth.lean - axis.lean
+    return teeth, axis
+
+
+def _wobble(floor: Floor) -> float | Open:
+    """Largest lean of the finished teeth to the axis they work on [rad]. Source: the ledger."""
+    found = where_it_works(floor)
+    if isinstance(found, Open):
+        return found
+    lean = found[0].lean - found[1].lean
     missing = lean.undetermined()
     return Open(missing) if missing else lean.largest()
 

@@ -125,6 +125,20 @@ def _outsides(floor: Floor, part: str) -> Iterator[_Stretch]:
                 yield _Stretch(ends[0], ends[1], root, True)
 
 
+def rim_over(floor: Floor, part: str, height: float) -> float | None:
+    """Largest outside cylinder of the finished part over a height of it [mm]; None where none is drawn. Source: the drawing."""
+    found = (
+        surface.diameter.value
+        for name, surface in floor.loaded.job.parts[part].surfaces.items()
+        if isinstance(surface, Round)
+        and surface.kind == "cylinder"
+        and surface.made != "stock"
+        and surface.low < height < surface.high
+        and (part, name) not in floor.removed
+    )
+    return max(found, default=None)
+
+
 def root_diameter(floor: Floor, part: str, name: str) -> float | Open:
     """Root circle of a toothing [mm]: the touched surface less twice the depth; else pitch circle - 2.5 modules.
 

@@ -8,11 +8,11 @@ from types import MappingProxyType
 
 from setupcheck.errors import SetupcheckError
 from setupcheck.physics.materials import CLASSES, EVIDENCE, FAMILIES, Range
-from setupcheck.quantities.data_rows import Row
+from setupcheck.quantities.data_rows import Row, rows
 from setupcheck.quantities.material_data import PER_MILLION
 from setupcheck.record import record
 from setupcheck.shipped import shipped
-from setupcheck.yamlfile import parse_plain, read_text
+from setupcheck.yamlfile import read_text
 
 FILE = "rules/data/classes.yaml"
 ANY_METAL = "any-metal"
@@ -72,13 +72,7 @@ def read_classes(text: str, file: str) -> dict[str, Usual]:
 
     Raises: JobError for broken YAML, SetupcheckError for an entry that is wrong or missing, with its line.
     """
-    tree = parse_plain(text, file)
-    data = tree.data
-    if not isinstance(data, dict) or data.get("format") != _FORMAT or not isinstance(data.get("classes"), dict):
-        raise SetupcheckError(f"{file}: 'format: {_FORMAT}' and a map 'classes' are needed")
-    listed = data["classes"]
-    assert isinstance(listed, dict)
-    found = {name: _usual(Row(tree, "classes", name, row)) for name, row in listed.items()}
+    found = {name: _usual(row) for name, row in rows(text, file, section="classes", format=_FORMAT).items()}
     missing = [name for name in (*CLASSES, ANY_METAL) if name not in found]
     if missing:
         raise SetupcheckError(f"{file}: there is no class {', '.join(missing)}")

@@ -7,13 +7,12 @@ from collections.abc import Mapping
 from functools import cache
 from types import MappingProxyType
 
-from setupcheck.errors import SetupcheckError
 from setupcheck.notation import nearest, quoted
 from setupcheck.physics.materials import CLASSES, Material, Value
-from setupcheck.quantities.data_rows import Row, wrong
+from setupcheck.quantities.data_rows import Row, rows
 from setupcheck.record import record
 from setupcheck.shipped import shipped
-from setupcheck.yamlfile import parse_plain, read_text
+from setupcheck.yamlfile import read_text
 
 FILE = "rules/data/materials.yaml"
 _FORMAT = 2
@@ -82,18 +81,13 @@ def read_materials(text: str, file: str) -> dict[str, Material]:
 
     Raises: JobError for broken YAML, SetupcheckError for an entry that is wrong or missing, with its line.
     """
-    tree = parse_plain(text, file)
-    data = tree.data
-    if not isinstance(data, dict) or data.get("format") != _FORMAT or not isinstance(data.get("materials"), dict):
-        raise SetupcheckError(f"{file}: 'format: {_FORMAT}' and a map 'materials' are needed")
-    listed = data["materials"]
-    assert isinstance(listed, dict)
-    found = {name: _material(Row(tree, "materials", name, row)) for name, row in listed.items()}
+    entries = rows(text, file, section="materials", format=_FORMAT)
+    found = {name: _material(row) for name, row in entries.items()}
     spelled: dict[str, str] = {}
     for name, each in found.items():
         for one in {_spelling(n) for n in (name, *each.also)}:
             if one in spelled:
-                raise wrong(tree, ("materials", name), f"shares a name with {spelled[one]}")
+                raise entries[name].wrong("", f"shares a name with {spelled[one]}")
             spelled[one] = name
     return found
 

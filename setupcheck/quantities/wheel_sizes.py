@@ -4,12 +4,12 @@ from __future__ import annotations
 
 import math
 
-from setupcheck.jobfile.models import Round
 from setupcheck.jobfile.worm import Mesh
 from setupcheck.notation import show
 from setupcheck.quantities.backlash import along_of, gap_of_insert
 from setupcheck.quantities.book import Open, OutOfRange, Quantity, in_range
 from setupcheck.quantities.drive import Drive, WheelCut, drive, middle, wheel_cut
+from setupcheck.quantities.joint_shape import rim_over
 from setupcheck.quantities.judged import Result
 from setupcheck.quantities.shop import Floor
 from setupcheck.quantities.worm_sizes import SAME, settled, starts_of, told, toothing
@@ -120,26 +120,34 @@ def width_advice(width: float, usual: float, floor: Floor) -> str:
     return f"{both}: {way}. Check module and width."
 
 
+def _tip_and_angle(floor: Floor) -> tuple[float, float] | Open:
+    """Tip diameter [mm] and axial pressure angle [rad] of the worm, or the keys to fill."""
+    worm = floor.loaded.job.worm
+    assert worm is not None
+    if worm.tip_diameter is None or worm.pressure_angle is None:
+        return Open(tuple(f"worm.{key}" for key in ("tip_diameter", "pressure_angle") if getattr(worm, key) is None))
+    return worm.tip_diameter, worm.pressure_angle
+
+
 def reach(floor: Floor, of: Wheel, width: float) -> float | Open:
     """How far along the worm its thread touches the teeth [mm].
 
     Raises: OutOfRange where it touches none, as with a module that is not the wheel's.  Source: worm.geometry.contact_reach.
     """
-    worm = floor.loaded.job.worm
-    assert worm is not None
-    missing = tuple(f"worm.{key}" for key in ("tip_diameter", "pressure_angle") if getattr(worm, key) is None)
-    if worm.tip_diameter is None or worm.pressure_angle is None:
-        return Open(missing)
+    known = _tip_and_angle(floor)
+    if isinstance(known, Open):
+        return known
+    tip_diameter, pressure_angle = known
     with in_range:
         found = geometry.contact_reach(
             starts=of.starts,
             axial_module=of.module,
             pitch_diameter=of.pitch_diameter,
-            tip_diameter=worm.tip_diameter,
+            tip_diameter=tip_diameter,
             wheel_diameter=of.diameter,
             throat_radius=throat_radius(of),
             outside_diameter=_rim(floor) or outside(of),
-            pressure_angle=worm.pressure_angle,
+            pressure_angle=pressure_angle,
             face_width=width,
         )
     if found <= 0.0:
@@ -148,17 +156,10 @@ def reach(floor: Floor, of: Wheel, width: float) -> float | Open:
 
 
 def _rim(floor: Floor) -> float | None:
-    """Largest cylinder drawn over the teeth's middle [mm]; None where none is."""
     node, mesh = toothing(floor), floor.loaded.job.mesh
-    if node is None or mesh is None:
-        return None
-    drawn = floor.loaded.job.parts[floor.loaded.ref(mesh.wheel).part].surfaces.values()
-    rims = [
-        s.diameter.value
-        for s in drawn
-        if isinstance(s, Round) and s.kind == "cylinder" and s.made != "stock" and s.low < node.at < s.high
-    ]
-    return max(rims, default=None)
+    return (
+        rim_over(floor, floor.loaded.ref(mesh.wheel).part, node.at) if node is not None and mesh is not None else None
+    )
 
 
 def thread_length(of: Wheel, reach: float) -> float:
@@ -182,16 +183,15 @@ def fewest(floor: Floor, of: Wheel) -> float | Open:
 
     Raises: OutOfRange for an angle that is none.  Source: worm.geometry.fewest_teeth.
     """
-    worm = floor.loaded.job.worm
-    assert worm is not None
-    missing = tuple(f"worm.{key}" for key in ("tip_diameter", "pressure_angle") if getattr(worm, key) is None)
-    if worm.tip_diameter is None or worm.pressure_angle is None:
-        return Open(missing)
+    known = _tip_and_angle(floor)
+    if isinstance(known, Open):
+        return known
+    tip_diameter, pressure_angle = known
     with in_range:
         least = geometry.fewest_teeth(
-            pressure_angle=worm.pressure_angle,
+            pressure_angle=pressure_angle,
             shift=of.shift,
-            addendum_factor=(worm.tip_diameter - of.worm_diameter) / (2.0 * of.module),
+            addendum_factor=(tip_diameter - of.worm_diameter) / (2.0 * of.module),
         )
     return float(max(math.ceil(least - 1e-9), 1))
 
