@@ -8,13 +8,13 @@ from setupcheck.physics.heating import AIR_CONDUCTIVITY, REFERENCE_TEMPERATURE, 
 from setupcheck.record import record
 
 _COARSE = 10
-"""Steps of the time integration where it is repeated to find a time; a test compares it with the fine one."""
+"""Steps of the time integration where it is repeated to find a time. Our choice; a test compares it with the fine one."""
 _LONGEST = 1e6
 """Seconds; a part that is not there after eleven days never is. Our choice."""
 _CLOSE = 1e-9
 """Of the diameter, a nanometre in a metre: where the search for a time stops. Our choice."""
 _ROUNDS = 60
-"""Of that search at most; it takes some eight."""
+"""Of that search at most; it takes some eight. Our choice."""
 
 
 @record(kw_only=True)

@@ -22,13 +22,15 @@ thermometers (excerpts opened). Dull loses more heat: the safe end for the carry
 STEFAN_BOLTZMANN = 5.670e-8
 """[W/m2K4]. Source: CODATA, rounded."""
 GRAVITY = 9.81
+"""[m/s2]. Source: standard gravity (CGPM 1901), rounded."""
 KELVIN = 273.15
+"""0 degC [K]. Source: definition of the degree Celsius."""
 AIR_CONDUCTIVITY = 0.03
 """Of warm air in the gap [W/mK], about 80 degC. Source: tables of air, from memory."""
 LUMPED_BELOW = 0.1
 """Biot number below which a body has one temperature throughout, to some 5 %. Source: textbooks of heat transfer."""
-_PARTS = 400  # of the integral over the temperature, which is steep near the air
-_STEPS = 100  # of the time integration; the tests compare with scipy and published times
+_PARTS = 400  # of the integral over the temperature, which is steep near the air; our choice
+_STEPS = 100  # of the time integration; our choice, the tests compare with scipy and published times
 
 
 @record

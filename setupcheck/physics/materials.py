@@ -42,7 +42,7 @@ COLD = -20.0
 """degC below which the colder table of expansions is taken; between it and 20 degC means differ little from those of heating.
 Our screening choice."""
 MEANS_END = 200.0
-"""degC up to which the expansion means of heating are meant: most are stated from 20 to 100 or 200 degC."""
+"""degC up to which the expansion means of heating are meant: most are stated from 20 to 100 or 200 degC (from memory)."""
 
 End = Literal["low", "high"]
 Part = Literal["hub", "shaft"]

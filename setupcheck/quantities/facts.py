@@ -24,7 +24,7 @@ from memory, scope pages opened; a hot-surface page has 60); the stricter is tak
 DEEP_COLD = -50.0
 """degC below which plain and hardened steel may crack without bending. Source: our screening choice."""
 _TOUCH = 1e-6
-"""mm within which two surfaces end at one height."""
+"""mm within which two surfaces end at one height. Our choice."""
 COLD_BELOW = 10.0
 """Kelvin under the room from which a shaft counts as chilled. Source: our screening choice."""
 

@@ -25,7 +25,7 @@ LEAST_FLASH_MARGIN = 40.0
 WITH_FILLING = 1.1
 """Liquid nitrogen that boils off over what is stated: a tenth goes as warm vessels are filled. Source: our screening choice,
 as a sheet on liquid nitrogen has it (from memory)."""
-_TENTH = 0.1
+_TENTH = 0.1  # of a litre or kilogram, as the advice is told
 LITRE = 1e-3
 """m3. The file's amounts of liquid are kept in m3."""
 PROVED = {

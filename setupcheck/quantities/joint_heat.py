@@ -30,7 +30,7 @@ SOAK_IN_OIL_PER_MM = 1800.0 / 25.4
 """Seconds in a stirred oil bath for each mm of wall: 30 min an inch, the upper end of 20 to 30. Source: shop advice for bearings
 (excerpt opened)."""
 GAUGE_STEP = {"mm": 0.001, "in": 0.0001 * 25.4}
-"""What a gauge's size is rounded up to [mm], by the units of the file."""
+"""What a gauge's size is rounded up to [mm], by the units of the file. Our choice."""
 LEFT_WHEN_IT_GRIPS = 0.3
 """Share of the joining play below which a hub may bite. Source: our screening choice."""
 

@@ -61,7 +61,8 @@ STEPS_IN = tuple(0.0254 * step for step in (0.1, 0.2, 0.3, 0.5, 1.0, 2.0, 5.0))
 """Where the shade changes [mm]: fine about the usual films of blue, coarse beyond; in thou for an inch file. Our choice."""
 
 DARK = (58, 96, 140)
-"""Shade of what is nearest, red, green, blue; the others go in equal steps to white, so that it prints in grey as well."""
+"""Shade of what is nearest, red, green, blue; the others go in equal steps to white, so that it prints in grey as well.
+Our choice."""
 
 BOX = 20.0
 """Width of a field of the legend [mm of paper]. Our choice."""

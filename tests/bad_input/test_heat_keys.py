@@ -96,8 +96,11 @@ def test_a_wrong_entry_of_heat_is_told_at_its_line(said: str, message: str) -> N
 
 
 def test_the_rounded_temperatures_of_dry_ice_and_nitrogen_are_read() -> None:
-    for said in ("shaft: -80 degC, cold_by: dry-ice", "shaft: 77 K, cold_by: liquid-nitrogen"):
-        read_job_text(WHEEL.replace(HEAT, f"heat: {{hub: 100 degC, {said}}}"), "job.yaml")
+    for said, cold in (("-80 degC, cold_by: dry-ice", -80.0), ("77 K, cold_by: liquid-nitrogen", -196.15)):
+        job = read_job_text(WHEEL.replace(HEAT, f"heat: {{hub: 100 degC, shaft: {said}}}"), "job.yaml").job
+        (heat_read,) = (s.join.heat for s in job.setups if s.join is not None)
+        assert heat_read is not None
+        assert heat_read.shaft == pytest.approx(cold)
 
 
 def test_a_service_or_a_room_below_absolute_zero_is_told_at_its_line() -> None:
@@ -120,4 +123,7 @@ def test_a_room_that_nobody_works_in_is_refused(room: str) -> None:
     "said", ["hub: 20 degC, by: oven", "hub: -30 degC", "shaft: 60 degC", "shaft: 20 degC, cold_by: freezer"]
 )
 def test_heat_and_cold_at_the_room_and_parts_that_nothing_heats_or_chills_are_read(said: str) -> None:
-    read_job_text(WHEEL.replace(HEAT, f"heat: {{{said}}}"), "job.yaml")
+    job = read_job_text(WHEEL.replace(HEAT, f"heat: {{{said}}}"), "job.yaml").job
+    (read,) = (s.join.heat for s in job.setups if s.join is not None)
+    assert read is not None
+    assert float(said.split()[1]) in (read.hub, read.shaft)

@@ -327,4 +327,6 @@ def test_measured_points_come_back_as_distances_square_to_the_flank() -> None:
 
 
 def test_the_insert_of_the_tests_is_a_profile() -> None:
-    measured_insert(real_insert().heights, real_insert().right, real_insert().left)
+    given = real_insert()
+    read = measured_insert(given.heights, given.right, given.left)
+    assert read.width(1.0) == pytest.approx(given.width(1.0))
