@@ -94,8 +94,8 @@ PRESSING = (
     Quantity(
         "fit.press_off",
         "join",
-        "N",
-        0,
+        "kN",
+        1,
         press_off_force,
         {**_PAIR, "most": "fit.interference_most", "rubbing": "fit.rubbing"},
         "force to press or pull the tightest pair off, cold",
@@ -112,8 +112,8 @@ PRESSING = (
     Quantity(
         "fit.press_force",
         "join",
-        "N",
-        0,
+        "kN",
+        1,
         press_force,
         {**_PAIR, "most": "fit.interference_most", "rubbing": "fit.rubbing", "join": ":"},
         "force at the end of pressing in",
@@ -121,8 +121,8 @@ PRESSING = (
     Quantity(
         "fit.press_allowed",
         "join",
-        "N",
-        0,
+        "kN",
+        1,
         press_allowed,
         {**_HERE, "op": "@op"},
         "force that the press may be asked for",

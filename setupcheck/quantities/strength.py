@@ -353,8 +353,8 @@ STRENGTH = (
     Quantity(
         "fit.force_held",
         "join",
-        "N",
-        0,
+        "kN",
+        2,
         force_held,
         {**_PAIR, "grip": "fit.grip_least", "friction": "fit.friction"},
         "force the loosest joint holds at its seat",
@@ -398,8 +398,8 @@ STRENGTH = (
     Quantity(
         "fit.force_asked",
         "join",
-        "N",
-        0,
+        "kN",
+        2,
         force_asked,
         {"join": ":", **_PAIR},
         "force at the seat the joint must carry",

@@ -34,7 +34,7 @@ HEAD_MEASURED = (
 BENEATH: tuple[tuple[str, ...], ...] = (
     (
         "marked: {contact.share} of each flank, {contact.ends} of its ends; middle {contact.middle_right} and "
-        "{contact.middle_left} along +z from the mid-plane, {contact.height_right} and {contact.height_left} outside the "
+        "{contact.middle_left} along +z from the mid-plane, {contact.height_right} and {contact.height_left} outward from the "
         "reference circle",
         "marked: {contact.share} of each flank, {contact.ends} of its ends",
     ),
