@@ -42,9 +42,8 @@ def oven(floor: Floor, join: Join, pair: Pair, most: float, needed: float, cap: 
     """
     heat = join.heat
     if most > ABSURD * pair.diameter:
-        unit, digits = ("in", 4) if floor.loaded.job.units == "in" else ("mm", 3)
         return (
-            f"The sizes do not belong together: {show(most, unit, digits)} of interference is more than a hundredth of the "
+            f"The sizes do not belong together: {floor.size(most)} of interference is more than a hundredth of the "
             f"diameter. Check the sizes and limits of {join.outer} and {join.inner}."
         )
     if heat is not None and heat.by_cold_alone(floor.loaded.job.room):
@@ -137,11 +136,10 @@ def lead(needed: float) -> str:
 def circle(cut: WheelCut, smallest: float, floor: Floor) -> str:
     """Cutter circles that will do and that mark best. Source: worm.cutter; own simulation."""
     tip = cut.drive.tip_diameter / 2.0
-    unit, digits = ("in", 3) if floor.loaded.job.units == "in" else ("mm", 1)
-    step = 25.4 / 1000.0 if unit == "in" else 0.1
+    step = 25.4 / 1000.0 if floor.loaded.job.units == "in" else 0.1
 
     def up(radius: float) -> str:
-        return show(math.ceil(radius / step - 1e-9) * step, unit, digits)
+        return floor.size(math.ceil(radius / step - 1e-9) * step, 1)
 
     return (
         f"Set the tip radius above {up(smallest)}; {up(BEST[0] * tip)} to {up(BEST[1] * tip)} marks best on most wheels. "
@@ -217,9 +215,8 @@ def depth(cut: WheelCut, floor: Floor) -> str | None:
     fed = cut.root + (cut.cut.depth or 0.0) - (d.centre_distance - d.tip_diameter / 2.0 - CLEARANCE * d.module)
     if fed <= 0.0:
         return None
-    unit, digits = ("in", 4) if floor.loaded.job.units == "in" else ("mm", 3)
     passes = f"; the passes must add up to it ({cut.path}.passes)" if cut.cut.passes else ""
-    return f"Feed {show(fed, unit, digits)} from that surface ({cut.path}.depth){passes}."
+    return f"Feed {floor.size(fed)} from that surface ({cut.path}.depth){passes}."
 
 
 def shift(floor: Floor, mesh: Mesh) -> str | None:
@@ -230,10 +227,9 @@ def shift(floor: Floor, mesh: Mesh) -> str | None:
     module, diameter = found
     plain = (diameter + node.count * module) / 2.0
     closing = (middle(mesh.centre_distance) - plain) / module
-    unit, digits = ("in", 4) if floor.loaded.job.units == "in" else ("mm", 3)
     if abs(closing) > LARGEST_SHIFT:
-        return f"Measure again: (d1 + d2)/2 is {show(plain, unit, digits)}, and no usual shift makes up for the rest."
-    return f"Write shift: {closing:.3f} under mesh (in modules), or measure again: (d1 + d2)/2 is {show(plain, unit, digits)}."
+        return f"Measure again: (d1 + d2)/2 is {floor.size(plain)}, and no usual shift makes up for the rest."
+    return f"Write shift: {closing:.3f} under mesh (in modules), or measure again: (d1 + d2)/2 is {floor.size(plain)}."
 
 
 def dividing_circle(setup: Setup, circles: str, worm_ratio: int, count: int) -> str:

@@ -24,8 +24,10 @@ def cold_error(heat: Heat) -> tuple[float, str] | None:
     return (row.value, row.name) if row is not None else None
 
 
-def out_of_the_cold(join: Join, op: int, way: float = +1.0) -> Known | Open:
-    """What a chilled shaft may have as it leaves the cold [degC]: as stated, and its error one way: +1 the warmest.
+def out_of_the_cold(join: Join, op: int, way: float = +1.0) -> tuple[float, frozenset[str]] | Open:
+    """What a chilled shaft may have as it leaves the cold [degC], and the typical values that rests on.
+
+    As stated, and its error one way: +1 the warmest.
 
     Source: the job file; a typical error of the means where none is stated.
     """
@@ -33,7 +35,7 @@ def out_of_the_cold(join: Join, op: int, way: float = +1.0) -> Known | Open:
     error = cold_error(heat)
     if heat.shaft is None or error is None:
         return Open((f"{path}.shaft",) * (heat.shaft is None) + (f"{path}.cold_error",) * (error is None))
-    return Known(heat.shaft + way * error[0], frozenset({error[1]} - {""}))
+    return heat.shaft + way * error[0], frozenset({error[1]} - {""})
 
 
 def seat_of(floor: Floor, join: Join, emissivity: float) -> Ring | Open | None:
@@ -75,8 +77,7 @@ def shaft_gain(floor: Floor, join: Join, op: int) -> float | Open | None:
         return Open(tuple(missing), seat.because if isinstance(seat, Open) else "")
     if seat is None:
         return None
-    begins = float(str(start.value))
-    return max(cooled_temperature(seat, start=begins, seconds=join.heat.carry, air=room) - begins, 0.0)
+    return max(cooled_temperature(seat, start=start[0], seconds=join.heat.carry, air=room) - start[0], 0.0)
 
 
 def shaft_at(floor: Floor, join: Join, op: int, gain: float) -> float | Known | Open | None:
@@ -90,7 +91,7 @@ def shaft_at(floor: Floor, join: Join, op: int, gain: float) -> float | Known | 
     if join.heat is None or not join.heat.chills(room):
         return join.heat.shaft if join.heat is not None and join.heat.shaft is not None else room
     start = out_of_the_cold(join, op)
-    return start if isinstance(start, Open) else Known(float(str(start.value)) + gain, start.rests_on)
+    return start if isinstance(start, Open) else Known(start[0] + gain, start[1])
 
 
 def kind_of_cold_error(floor: Floor, join: Join, at: float) -> str | None:

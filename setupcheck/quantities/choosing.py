@@ -6,7 +6,6 @@ import math
 
 from setupcheck.jobfile.names import Ref
 from setupcheck.jobfile.setups import Join, MeasuredPair
-from setupcheck.notation import show
 from setupcheck.physics.materials import expansion_for
 from setupcheck.quantities.book import Open, Quantity
 from setupcheck.quantities.joining import JointSizes
@@ -93,9 +92,7 @@ def suits(floor: Floor, join: Join, sizes: JointSizes, window: Window) -> str:
     A measured bore takes journals from its largest + least interference to its smallest + largest; a journal the reverse.
     Source: `window`.
     """
-    inches = floor.loaded.job.units == "in"
-    fine, places = ("thou", 2) if inches else ("um", 1)
-    any_pair = f"any pair with {_inward(window, fine, places)} of interference"
+    any_pair = f"any pair with {_inward(floor, window)} of interference"
     bore, journal = (_measured(floor, floor.loaded.ref(text)) for text in (join.outer, join.inner))
     if bore == journal:
         return f"{any_pair} on diameter at 20 degC"
@@ -113,21 +110,22 @@ def suits(floor: Floor, join: Join, sizes: JointSizes, window: Window) -> str:
         )
     if low > high:
         return f"{any_pair}, which is less than the reading's own uncertainty leaves"
-    unit, digits = ("in", 5) if inches else ("mm", 4)
-    step = 25.4e-5 if inches else 1e-4
-    low, high = math.ceil(low / step - _SAME) * step, math.floor(high / step + _SAME) * step
-    return f"{what} of {show(low, unit, digits)} to {show(high, unit, digits)}"
+    low, high = _rounded_in(low, high, 25.4e-5 if floor.loaded.job.units == "in" else 1e-4)
+    return f"{what} of {floor.size(low, 4)} to {floor.size(high, 4)}"
 
 
 _SAME = 1e-6
 """Share of a shown step that is rounding alone. Source: our choice."""
 
 
-def _inward(window: Window, unit: str, digits: int) -> str:
-    """Both ends rounded into the window, so that what is printed passes."""
-    step = (0.0254 if unit == "thou" else 0.001) * 10.0**-digits
-    low, high = math.ceil(window.low / step - _SAME) * step, math.floor(window.high / step + _SAME) * step
-    return f"{show(low, unit, digits)} to {show(high, unit, digits)}"
+def _rounded_in(low: float, high: float, step: float) -> tuple[float, float]:
+    """Both ends rounded into the window by the step they are shown in, so that what is printed passes."""
+    return math.ceil(low / step - _SAME) * step, math.floor(high / step + _SAME) * step
+
+
+def _inward(floor: Floor, window: Window) -> str:
+    low, high = _rounded_in(window.low, window.high, 25.4e-5 if floor.loaded.job.units == "in" else 1e-4)
+    return f"{floor.fine(low)} to {floor.fine(high)}"
 
 
 def _measured(floor: Floor, ref: Ref) -> bool:
@@ -160,9 +158,8 @@ def pairs_said(pairs: tuple[MeasuredPair, ...], window: Window, op: int) -> str 
 
 def pairs_told(pairs: tuple[MeasuredPair, ...], floor: Floor, window: Window) -> str:
     """Each measured pair with its interference, and what speaks against it. Source: `pairs_said`."""
-    fine, places = ("thou", 2) if floor.loaded.job.units == "in" else ("um", 1)
-    each = ", ".join(f"{p.name} {show(p.journal - p.bore, fine, places)} ({_verdict(p, window)})" for p in pairs)
-    return f"{each}; {_inward(window, fine, places)} suits"
+    each = ", ".join(f"{p.name} {floor.fine(p.journal - p.bore)} ({_verdict(p, window)})" for p in pairs)
+    return f"{each}; {_inward(floor, window)} suits"
 
 
 def pairs_fit(said: str) -> str:

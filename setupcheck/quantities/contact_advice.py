@@ -19,14 +19,6 @@ SAME = math.radians(0.5 / 60.0)
 """Half a minute of arc: a tilt nearer than that to the lead angle is not what a remedy speaks of. Our screening choice."""
 
 
-def _size(floor: Floor, value: float) -> str:
-    return show(value, "in", 3) if floor.loaded.job.units == "in" else show(value, "mm", 1)
-
-
-def _um(floor: Floor, value: float, digits: int = 1) -> str:
-    return show(value, "thou", digits + 1) if floor.loaded.job.units == "in" else show(value, "um", digits)
-
-
 def _ground_to(cut: WheelCut, made: Made) -> str:
     """What to do with an insert that is not the envelope, and where that is written."""
     if isinstance(made, Points):
@@ -37,7 +29,7 @@ def _ground_to(cut: WheelCut, made: Made) -> str:
 def for_radius(cut: WheelCut, radius: float, share: float, floor: Floor) -> str:
     """The recommended radius and what it marks. Source: worm.best_cutter."""
     return (
-        f"Set the tip radius to {_size(floor, radius)} ({cut.cutter_path}.tip_radius): the ends stay clear and "
+        f"Set the tip radius to {floor.size(radius, 1)} ({cut.cutter_path}.tip_radius): the ends stay clear and "
         f"{show(share, '%', 0)} of a flank is marked. Round up, never down."
     )
 
@@ -58,20 +50,20 @@ def for_error(
     ground = _ground_to(cut, made)
     true, at = run(drill, cut.radius, "envelope", made_for, 1), run(drill, cut.radius, "envelope", setting, 1)
     if made != "envelope" and at.transmission_error <= budget:
-        return f"{ground}: the error falls from {_um(floor, error)} to {_um(floor, at.transmission_error)}."
+        return f"{ground}: the error falls from {floor.fine(error)} to {floor.fine(at.transmission_error)}."
     grind = f" and {ground[0].lower()}{ground[1:]}" if made != "envelope" else ""
     if abs(setting.tilt - made_for.tilt) > SAME and true.transmission_error <= budget:
         lead = show_angle(made_for.tilt, "dms", 0)
         return (
-            f"Set {lead} (setups.{cut.op}.head.tilt){grind}: the error falls from {_um(floor, error)} to "
-            f"{_um(floor, true.transmission_error)}."
+            f"Set {lead} (setups.{cut.op}.head.tilt){grind}: the error falls from {floor.fine(error)} to "
+            f"{floor.fine(true.transmission_error)}."
         )
     if radius is not None and cut.radius < radius:
         best = run(drill, radius, "envelope", bench_of(drill).cut(radius), 1)
         if best.transmission_error <= budget:
             return (
-                f"Set the tip radius to {_size(floor, radius)} ({cut.cutter_path}.tip_radius){grind}: the error falls from "
-                f"{_um(floor, error)} to {_um(floor, best.transmission_error)}."
+                f"Set the tip radius to {floor.size(radius, 1)} ({cut.cutter_path}.tip_radius){grind}: the error falls from "
+                f"{floor.fine(error)} to {floor.fine(best.transmission_error)}."
             )
     return None
 
@@ -106,9 +98,9 @@ def _forgiving(drill: Drill, name: str, needed: float, budget: float, cut: Wheel
     if found is None:
         return None
     share = run(drill, found[0], "envelope", bench.cut(found[0]), 1).share
-    shown = show(found[1], "arcmin", 1) if name == "tilt" else _um(floor, found[1], 0)
+    shown = show(found[1], "arcmin", 1) if name == "tilt" else floor.fine(found[1], 0)
     return (
-        f"set the tip radius to {_size(floor, found[0])} ({cut.cutter_path}.tip_radius), which forgives {shown} and marks "
+        f"set the tip radius to {floor.size(found[0], 1)} ({cut.cutter_path}.tip_radius), which forgives {shown} and marks "
         f"{show(share, '%', 0)} of a flank"
     )
 
@@ -131,7 +123,7 @@ def for_tilt(drill: Drill, allowed: float, worst: float, budget: float, cut: Whe
 def for_mid_plane(drill: Drill, allowed: float, worst: float, budget: float, cut: WheelCut, floor: Floor) -> str:
     """What the mid-plane has to keep, or the radius that forgives it. Source: worm.best_cutter."""
     return _or(
-        f"Bring the mid-plane within {_um(floor, _down(allowed, 'um'), 0)} of the worm's axis "
+        f"Bring the mid-plane within {floor.fine(_down(allowed, 'um'), 0)} of the worm's axis "
         f"(setups.{cut.op}.head.mid_plane.error, place.worm_axis)",
         _forgiving(drill, "offset", worst, budget, cut, floor),
     )
@@ -140,7 +132,7 @@ def for_mid_plane(drill: Drill, allowed: float, worst: float, budget: float, cut
 def for_depth(allowed: float, cut: WheelCut, floor: Floor) -> str:
     """What the depth has to keep. Source: worm.best_cutter."""
     return (
-        f"Bring feed and touch within {_um(floor, _down(allowed, 'um'), 0)} on the radius ({cut.path}.depth_error; half of "
+        f"Bring feed and touch within {floor.fine(_down(allowed, 'um'), 0)} on the radius ({cut.path}.depth_error; half of "
         f"{cut.path}.depth_from.at_most counts), or cut a trial gap and measure it."
     )
 

@@ -107,11 +107,8 @@ def growth_at_outside(pair: Pair, grip: float) -> float:
 
 def growth_in_words(pair: Pair, grip: float, join: Join, floor: Floor) -> str:
     """Largest growth at each outside of the hub and at every diameter that `growth_at` asks for. Source: `growth_of`."""
-    inches = floor.loaded.job.units == "in"
-    unit, digits = ("in", 3) if inches else ("mm", 2)
-    fine, places = ("thou", 2) if inches else ("um", 1)
     asked = sorted({*join.growth_at, *(s.outside for s in pair.sections)}, reverse=True)
-    return ", ".join(f"{show(d, unit, digits)} by {show(growth_of(pair, grip, d), fine, places)}" for d in asked)
+    return ", ".join(f"{floor.size(d, 2)} by {floor.fine(growth_of(pair, grip, d))}" for d in asked)
 
 
 @record

@@ -236,11 +236,10 @@ def gauge_to_try(gauge: float, go: float, enters: float | None) -> float | None:
 
 def gauge_advice(floor: Floor, op: int, go: float, enters: float | None) -> str:
     """Size of the gauge for the hot bore, and the largest that the smallest bore takes in. Source: quantities.joint_heat."""
-    unit, digits = ("in", 4) if floor.loaded.job.units == "in" else ("mm", 3)
-    made = f"Make the gauge {show(go, unit, digits)}, the largest journal and the play (setups.{op}.join.heat.gauge)"
+    made = f"Make the gauge {floor.size(go)}, the largest journal and the play (setups.{op}.join.heat.gauge)"
     if enters is None:
         return f"{made}."
-    return f"{made}; as hot as planned, the smallest bore takes up to {show(enters, unit, digits)}."
+    return f"{made}; as hot as planned, the smallest bore takes up to {floor.size(enters)}."
 
 
 _JOIN, _OP = {"join": ":"}, {"op": "@op"}

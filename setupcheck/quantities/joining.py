@@ -8,7 +8,6 @@ from setupcheck.jobfile.names import Ref
 from setupcheck.jobfile.setups import Join
 from setupcheck.ledger.account import Account
 from setupcheck.ledger.causes import Cause
-from setupcheck.notation import show
 from setupcheck.quantities.book import Known, Open, Quantity, in_range
 from setupcheck.quantities.shop import Floor
 from setupcheck.quantities.sized import at_reference
@@ -128,8 +127,7 @@ def fit_in_words(floor: Floor, most: float, least: float) -> str:
 
     Source: the limits of bore and journal.
     """
-    unit, digits = ("thou", 2) if floor.loaded.job.units == "in" else ("um", 1)
-    low, high = show(abs(least), unit, digits), show(abs(most), unit, digits)
+    low, high = floor.fine(abs(least)), floor.fine(abs(most))
     match kind(most, least):
         case "interference":
             return f"interference {low} to {high} at 20 degC"

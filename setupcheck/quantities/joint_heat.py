@@ -129,7 +129,7 @@ def window(
         start = out_of_the_cold(join, op, -1.0)
         if isinstance(start, Open):
             return start
-        coldest = float(str(start.value))
+        coldest, _ = start
     play = joining_play(sizes.nominal)
     grows = pair.hub.heating.high  # what the bore closes for each kelvin, at most
     hub = ring_of(pair)

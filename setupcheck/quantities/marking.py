@@ -28,9 +28,6 @@ if TYPE_CHECKING:  # imported where they are used: no other review needs them
 THIN = 0.5
 """Share of the flank marked, over the one expected, below which a mark in its place still tells of something. Our choice."""
 
-ROWS, COLUMNS = 32, 65
-"""Grid of the flank, as in worm.best_cutter: shares within 1 % of one twice as fine (tests/unit/worm)."""
-
 
 @record
 class Cutting:
@@ -99,6 +96,7 @@ def read(floor: Floor, mesh: Mesh, cutting: Cutting) -> Told | Open:
 
 def _chart(floor: Floor, cutting: Cutting, mark: Mark) -> Chart | Open:
     """Marks that errors of the setting give, about the setting the insert is made for."""
+    from setupcheck.worm.best_cutter import COLUMNS, ROWS
     from setupcheck.worm.marks import chart
     from setupcheck.worm.wheel_flank import wheel_flank
 
@@ -186,7 +184,7 @@ def says(told: Told, floor: Floor) -> str:
     if "offset" in told.cause:
         where = _towards(told, floor, reading.offset)
         parts.append(
-            f"the gaps stand {least}{_mm(floor, abs(reading.offset))} beyond the worm's middle towards {where}"
+            f"the gaps stand {least}{floor.size(abs(reading.offset))} beyond the worm's middle towards {where}"
         )
     return " and ".join(parts)
 
@@ -240,7 +238,7 @@ def _lean(told: Told, floor: Floor, error: float) -> str:
 
 def _shift(told: Told, floor: Floor, error: float) -> str:
     """Where the wheel has to go; the shim, if a joint made after the teeth has one."""
-    amount, to = _mm(floor, abs(error)), _towards(told, floor, -error)
+    amount, to = floor.size(abs(error)), _towards(told, floor, -error)
     text = f"Move the wheel {amount} towards {to} against the worm, or cut the next one with the cutter that much nearer to {to}."
     wheel = told.cutting.cut.drive.wheel
     teeth = floor.now(wheel)
@@ -300,13 +298,12 @@ def _ring(told: Told, floor: Floor, results: list[Result]) -> str:
 def _cutter(told: Told, floor: Floor) -> str:
     cut = told.cutting.cut
     smallest = cutter_shape.smallest_radius(cut)
-    unit, digits = ("in", 3) if floor.loaded.job.units == "in" else ("mm", 1)
     if cut.radius < smallest:
-        return f"Set the tip radius above {show(smallest + 0.05, unit, digits)}: {show(cut.radius, unit, digits)} is too small."
+        return f"Set the tip radius above {floor.size(smallest + 0.05, 1)}: {floor.size(cut.radius, 1)} is too small."
     if told.cutting.insert == "mid-plane":
         return "Grind the insert to the envelope: a copy of the mid-plane section is too narrow at its tip and at the throat."
     return (
-        f"The plan's tip radius of {show(cut.radius, unit, digits)} keeps the ends clear: measure it at the bar, then the "
+        f"The plan's tip radius of {floor.size(cut.radius, 1)} keeps the ends clear: measure it at the bar, then the "
         "insert's profile."
     )
 
@@ -330,9 +327,11 @@ def next_mark(told: Told, floor: Floor) -> str | None:
 
 
 def _where(told: Told, floor: Floor, z: float, chart: Chart) -> str:
-    unit, digits = ("in", 2) if floor.loaded.job.units == "in" else ("mm", 1)
-    said = show(abs(z), unit, digits)
-    return f"{said} from the middle towards {_towards(told, floor, z)}" if abs(z) >= 0.1 else "in the middle"
+    return (
+        f"{floor.size(abs(z), 1)} from the middle towards {_towards(told, floor, z)}"
+        if abs(z) >= 0.1
+        else "in the middle"
+    )
 
 
 def _height(word: Height) -> str:
@@ -341,10 +340,6 @@ def _height(word: Height) -> str:
 
 def _minutes(angle: float) -> str:
     return show(angle, "arcmin", 0 if angle > 0.0015 else 1)  # 5'
-
-
-def _mm(floor: Floor, length: float) -> str:
-    return show(length, "in", 4) if floor.loaded.job.units == "in" else show(length, "mm", 3)
 
 
 def _row(name: str, unit: str, digits: int, of: object, inputs: dict[str, str], says: str) -> Quantity:

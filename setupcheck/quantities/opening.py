@@ -88,9 +88,11 @@ def way(
     shaft = Body(ring=None, start=shaft_at, expansion=shrinks)
     if heat is not None and heat.chills(room):
         start, seat = out_of_the_cold(join, op), seat_of(floor, join, eps)
-        if isinstance(start, Open) or isinstance(seat, Open):
-            return start if isinstance(start, Open) else seat  # type: ignore[return-value]
-        shaft = Body(ring=seat, start=float(str(start.value)), expansion=shrinks)
+        if isinstance(start, Open):
+            return start
+        if isinstance(seat, Open):
+            return seat
+        shaft = Body(ring=seat, start=start[0], expansion=shrinks)
     return Way(hub, shaft, pair.diameter, room)
 
 

@@ -11,6 +11,7 @@ from setupcheck.jobfile.reading import LoadedJob
 from setupcheck.ledger import route
 from setupcheck.ledger.causes import Cause
 from setupcheck.ledger.route import Placing, State
+from setupcheck.notation import show
 from setupcheck.quantities.causes import Towards
 from setupcheck.record import record
 
@@ -57,6 +58,14 @@ class Floor:
     removed: dict[tuple[str, str], int] = field(default_factory=dict)
     frames: dict[str, tuple[int, float]] = field(default_factory=dict)
     marks: dict[str, float | None] = field(default_factory=dict)
+
+    def size(self, mm: float, digits: int = 3) -> str:
+        """A size [mm] in the units of the file: so many decimals of a millimetre, of an inch one more and at least three."""
+        return show(mm, "in", max(digits + 1, 3)) if self.loaded.job.units == "in" else show(mm, "mm", digits)
+
+    def fine(self, mm: float, digits: int = 1) -> str:
+        """A small length [mm] in um, or with one decimal more in thou."""
+        return show(mm, "thou", digits + 1) if self.loaded.job.units == "in" else show(mm, "um", digits)
 
     def z(self, part: str, own: float) -> float:
         """A height in a part's own coordinates, in the frame of the body it belongs to by now [mm]."""

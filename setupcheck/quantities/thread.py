@@ -164,16 +164,13 @@ def thickness_share(found: Thread | None, pitch: float | None) -> float | None:
 
 def share_advice(floor: Floor, worm: Worm, found: Thread, pitch: float) -> str:
     """What a thread far from half the pitch most likely comes from, in this job's numbers. Source: the usual slips."""
-    unit, digits = ("in", 5) if floor.loaded.job.units == "in" else ("mm", 4)
-    both = f"It comes out {show(found.middle, unit, digits)}, half the pitch is {show(pitch / 2.0, unit, digits)}."
+    both = f"It comes out {floor.size(found.middle, 4)}, half the pitch is {floor.size(pitch / 2.0, 4)}."
     if found.path == "worm.over_wires" and worm.over_wires is not None:
-        wire = show(worm.over_wires.wire, unit, digits - 1)
+        wire = floor.size(worm.over_wires.wire, 3)
         return f"{both} Measure the wires again ({wire} is written), and the size over them."
     at = worm.thread_thickness.at if worm.thread_thickness is not None else None
     if at is not None:
-        return (
-            f"{both} Measure it again, and the diameter it was measured at ({show(at, unit, digits - 1)} is written)."
-        )
+        return f"{both} Measure it again, and the diameter it was measured at ({floor.size(at, 3)} is written)."
     return f"{both} Measure it again, along the axis at the reference diameter, and check the pitch."
 
 
@@ -190,10 +187,9 @@ def thickness_miss(floor: Floor, worm: Worm) -> str | None:
     allowed = sum(x.expanded for x in (flat, wired) if math.isfinite(x.expanded)) + ROUNDED
     if apart <= allowed:
         return None
-    unit, digits = ("in", 5) if floor.loaded.job.units == "in" else ("mm", 4)
     return (
-        f"thread_thickness gives {show(flat.middle, unit, digits)} at the reference diameter, over_wires "
-        f"{show(wired.middle, unit, digits)}, {show(apart, 'um', 0)} apart"
+        f"thread_thickness gives {floor.size(flat.middle, 4)} at the reference diameter, over_wires "
+        f"{floor.size(wired.middle, 4)}, {show(apart, 'um', 0)} apart"
     )
 
 

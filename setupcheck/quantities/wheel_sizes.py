@@ -112,11 +112,10 @@ def width_share(width: float, usual: float) -> float:
 
 def width_advice(width: float, usual: float, floor: Floor) -> str:
     """The usual width in words. Source: mesh.usual_width."""
-    unit, digits = ("in", 3) if floor.loaded.job.units == "in" else ("mm", 1)
     way = (
         "a wider face marks no more, as the flank's ends stand off" if width > usual else "a narrower face wears faster"
     )
-    both = f"Usual is {show(usual, unit, digits)} for this worm, drawn is {show(width, unit, digits)}"
+    both = f"Usual is {floor.size(usual, 1)} for this worm, drawn is {floor.size(width, 1)}"
     return f"{both}: {way}. Check module and width."
 
 
@@ -321,8 +320,7 @@ def interference(floor: Floor, arcs: tuple[float, float], of: Wheel) -> str | No
     """A backlash whose lowest end is below zero, as the interference it is; None above zero. Source: mesh.arcs."""
     if arcs[0] >= 0.0:
         return None
-    unit, digits = ("thou", 2) if floor.loaded.job.units == "in" else ("um", 1)
-    least, most = (show(abs(arc), unit, digits) for arc in arcs)
+    least, most = (floor.fine(abs(arc)) for arc in arcs)
     if arcs[1] < 0.0:
         return f"{most} to {least} of interference along the reference circle: no backlash anywhere, the worm does not go in"
     wheel, worm = at_wheel(arcs[1], of), at_worm(arcs[1], of)

@@ -214,7 +214,7 @@ def told(floor: Floor, name: str, value: float) -> str:
 def _shown(floor: Floor, name: str, value: float) -> str:
     if name in ("starts", "teeth", "quotient", "diametral_pitch", "shift"):
         return f"{value:.3f}".rstrip("0").rstrip(".")
-    return show(value, "in", 4) if floor.loaded.job.units == "in" else show(value, "mm", 3)
+    return floor.size(value)
 
 
 def contradictions(floor: Floor) -> tuple[Disagreement, ...]:
