@@ -2,10 +2,12 @@
 
 from __future__ import annotations
 
+import math
 from functools import cache
 
 from setupcheck.flow import Review, review
 from setupcheck.jobfile.reading import read_job_text
+from setupcheck.physics.heating import DULL, Ring
 from setupcheck.quantities.book import Answer, Known
 from setupcheck.rulebook import Finding
 
@@ -38,6 +40,16 @@ setups:
       must_carry: {torque: 50 N m}
       serves_at: [10 degC, 25 degC]
 """
+
+# slices 10 mm of 90 and 20 mm of 115, as one ring of the same volume
+RING = Ring(
+    bore=60.0,
+    outside=math.sqrt((10.0 * 90.0**2 + 20.0 * 115.0**2) / 30.0),
+    length=30.0,
+    density=8700.0,
+    specific_heat=373.0,
+    emissivity=DULL,
+)
 
 
 def changed(*pairs: tuple[str, str], text: str = WHOLE) -> str:

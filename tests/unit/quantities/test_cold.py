@@ -2,15 +2,13 @@
 
 from __future__ import annotations
 
-import math
-
 import pytest
 
 from setupcheck.physics.carrying import Body, time_open
 from setupcheck.physics.heating import DULL, Ring, cooled_temperature, joining_play
 from setupcheck.quantities.book import Known, Open
 
-from .joint_text import answer, changed, finding, number, reviewed, value
+from .joint_text import RING, answer, changed, finding, number, reviewed, value
 
 HEAT = "heat: {hub: 190 degC, oven_error: 5 degC, carry: 10 s}"
 SEAT = Ring(bore=20.0, outside=60.0, length=30.0, density=7830.0, specific_heat=468.0, emissivity=DULL)
@@ -215,15 +213,7 @@ def test_the_way_may_take_so_long_and_no_longer(said: str) -> None:
 
 def test_the_times_are_those_of_the_leaf() -> None:
     text = heat("hub: 150 degC, oven_error: 5 degC, carry: 10 s, shaft: -75 degC, cold_by: dry-ice, cold_error: 5 K")
-    ring = Ring(
-        bore=60.0,
-        outside=math.sqrt((10.0 * 90.0**2 + 20.0 * 115.0**2) / 30.0),
-        length=30.0,
-        density=8700.0,
-        specific_heat=373.0,
-        emissivity=DULL,
-    )
-    hub, shaft = Body(ring=ring, start=145.0, expansion=17.0e-6), Body(ring=SEAT, start=-70.0, expansion=8.5e-6)
+    hub, shaft = Body(ring=RING, start=145.0, expansion=17.0e-6), Body(ring=SEAT, start=-70.0, expansion=8.5e-6)
     ours = time_open(hub, shaft, needed=0.060 + 0.060, diameter=60.0, air=20.0)
     assert ours == pytest.approx(number(text, "heat.carry_allowed"), rel=1e-6)
 

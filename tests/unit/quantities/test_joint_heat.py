@@ -2,26 +2,15 @@
 
 from __future__ import annotations
 
-import math
-
 import pytest
 
 from setupcheck.physics.carrying import time_to_close
 from setupcheck.physics.heating import DULL, Ring, carry_time, cooled_temperature, joining_play
 from setupcheck.quantities.book import Open
 
-from .joint_text import answer, changed, finding, number, reviewed
+from .joint_text import RING, answer, changed, finding, number, reviewed
 
 CARRY = "carry: 10 s"
-# slices 10 mm of 90 and 20 mm of 115, as one ring of the same volume
-RING = Ring(
-    bore=60.0,
-    outside=math.sqrt((10.0 * 90.0**2 + 20.0 * 115.0**2) / 30.0),
-    length=30.0,
-    density=8700.0,
-    specific_heat=373.0,
-    emissivity=DULL,
-)
 
 
 @pytest.mark.parametrize("seconds", [1, 10, 60, 300])
