@@ -110,7 +110,7 @@ def suits(floor: Floor, join: Join, sizes: JointSizes, window: Window) -> str:
         )
     if low > high:
         return f"{any_pair}, which is less than the reading's own uncertainty leaves"
-    low, high = _rounded_in(low, high, 25.4e-5 if floor.loaded.job.units == "in" else 1e-4)
+    low, high = _rounded_in(low, high, floor.fine_step())
     return f"{what} of {floor.size(low, 4)} to {floor.size(high, 4)}"
 
 
@@ -124,7 +124,7 @@ def _rounded_in(low: float, high: float, step: float) -> tuple[float, float]:
 
 
 def _inward(floor: Floor, window: Window) -> str:
-    low, high = _rounded_in(window.low, window.high, 25.4e-5 if floor.loaded.job.units == "in" else 1e-4)
+    low, high = _rounded_in(window.low, window.high, floor.fine_step())
     return f"{floor.fine(low)} to {floor.fine(high)}"
 
 

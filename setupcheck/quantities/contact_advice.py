@@ -19,6 +19,10 @@ SAME = math.radians(0.5 / 60.0)
 """Half a minute of arc: a tilt nearer than that to the lead angle is not what a remedy speaks of. Our screening choice."""
 
 
+MINUTES = math.radians(0.1 / 60.0)
+"""Step in which a tilt is told [rad]. Our choice."""
+
+
 def _ground_to(cut: WheelCut, made: Made) -> str:
     """What to do with an insert that is not the envelope, and where that is written."""
     if isinstance(made, Points):
@@ -113,7 +117,7 @@ def _or(first: str, second: str | None) -> str:
 def for_tilt(drill: Drill, allowed: float, worst: float, budget: float, cut: WheelCut, floor: Floor) -> str:
     """What the tilt has to keep, or the radius that forgives it. Source: worm.best_cutter."""
     return _or(
-        f"Bring head, shaft angle and wobble within {show(_down(allowed, 'arcmin'), 'arcmin', 1)} together "
+        f"Bring head, shaft angle and wobble within {show(_down(allowed, MINUTES), 'arcmin', 1)} together "
         f"(setups.{cut.op}.head.uncertainty, mesh.shaft_angle_error)",
         _forgiving(drill, "tilt", worst, budget, cut, floor),
     )
@@ -123,7 +127,7 @@ def for_tilt(drill: Drill, allowed: float, worst: float, budget: float, cut: Whe
 def for_mid_plane(drill: Drill, allowed: float, worst: float, budget: float, cut: WheelCut, floor: Floor) -> str:
     """What the mid-plane has to keep, or the radius that forgives it. Source: worm.best_cutter."""
     return _or(
-        f"Bring the mid-plane within {floor.fine(_down(allowed, 'um'), 0)} of the worm's axis "
+        f"Bring the mid-plane within {_fine_down(floor, allowed)} of the worm's axis "
         f"(setups.{cut.op}.head.mid_plane.error, place.worm_axis)",
         _forgiving(drill, "offset", worst, budget, cut, floor),
     )
@@ -132,14 +136,17 @@ def for_mid_plane(drill: Drill, allowed: float, worst: float, budget: float, cut
 def for_depth(allowed: float, cut: WheelCut, floor: Floor) -> str:
     """What the depth has to keep. Source: worm.best_cutter."""
     return (
-        f"Bring feed and touch within {floor.fine(_down(allowed, 'um'), 0)} on the radius ({cut.path}.depth_error; half of "
+        f"Bring feed and touch within {_fine_down(floor, allowed)} on the radius ({cut.path}.depth_error; half of "
         f"{cut.path}.depth_from.at_most counts), or cut a trial gap and measure it."
     )
 
 
-def _down(value: float, unit: str) -> float:
+def _fine_down(floor: Floor, allowed: float) -> str:
+    return floor.fine(_down(allowed, floor.fine_step(0)), 0)
+
+
+def _down(value: float, step: float) -> float:
     """Rounded down to what is printed, so that the printed value does it."""
-    step = 1e-3 if unit == "um" else math.radians(0.1 / 60.0)
     return math.floor(value / step + 1e-6) * step
 
 

@@ -67,6 +67,10 @@ class Floor:
         """A small length [mm] in um, or with one decimal more in thou."""
         return show(mm, "thou", digits + 1) if self.loaded.job.units == "in" else show(mm, "um", digits)
 
+    def fine_step(self, digits: int = 1) -> float:
+        """Step of the last decimal that `fine` shows [mm]: what a limit in words is rounded by, to the side that passes."""
+        return 0.00254 * 10.0**-digits if self.loaded.job.units == "in" else 0.001 * 10.0**-digits
+
     def z(self, part: str, own: float) -> float:
         """A height in a part's own coordinates, in the frame of the body it belongs to by now [mm]."""
         sense, shift = self.frames.get(part, (1, 0.0))
