@@ -21,6 +21,7 @@ from setupcheck.jobfile.insert_profile import InsertProfile
 from setupcheck.jobfile.properties import Properties
 from setupcheck.jobfile.types import (
     Angle,
+    AngleBound,
     Bound,
     Division,
     Force,
@@ -279,7 +280,7 @@ class Part(Shop):
 class Cutter(Shop):
     """A cutter. `width` of an insert, at the height `width_at` above its tip; at pitch height where none is said.
 
-    `profile` of the insert as measured after grinding.
+    `profile` of the insert as measured after grinding; `turned`: what it may be turned in its face as it sits in the bar.
     """
 
     kind: Literal["single-point", "hob", "form-cutter", "drill", "reamer", "boring-head", "grinding-wheel", "broach"]
@@ -291,6 +292,7 @@ class Cutter(Shop):
     width_at: Size | None = None
     grinding: Grinding | None = None
     profile: InsertProfile | None = None
+    turned: AngleBound | None = None
     diameter: Size | None = None
     speed: Speed | None = None
 

@@ -102,7 +102,7 @@ def _forgiving(drill: Drill, name: str, needed: float, budget: float, cut: Wheel
     if found is None:
         return None
     share = run(drill, found[0], "envelope", bench.cut(found[0]), 1).share
-    shown = show(found[1], "arcmin", 1) if name == "tilt" else floor.fine(found[1], 0)
+    shown = show(found[1], "arcmin", 1) if name in ("tilt", "turned") else floor.fine(found[1], 0)
     return (
         f"set the tip radius to {floor.size(found[0], 1)} ({cut.cutter_path}.tip_radius), which forgives {shown} and marks "
         f"{show(share, '%', 0)} of a flank"
@@ -138,6 +138,16 @@ def for_depth(allowed: float, cut: WheelCut, floor: Floor) -> str:
     return (
         f"Bring feed and touch within {_fine_down(floor, allowed)} on the radius ({cut.path}.depth_error; half of "
         f"{cut.path}.depth_from.at_most counts), or cut a trial gap and measure it."
+    )
+
+
+@in_range
+def for_turned(drill: Drill, allowed: float, worst: float, budget: float, cut: WheelCut, floor: Floor) -> str:
+    """What the turn of the insert has to keep, or the radius that forgives it. Source: worm.best_cutter."""
+    return _or(
+        f"Bring the insert within {show(_down(allowed, MINUTES), 'arcmin', 1)} in its bar, the stop it was ground against "
+        f"included ({cut.cutter_path}.turned)",
+        _forgiving(drill, "turned", worst, budget, cut, floor),
     )
 
 
@@ -189,6 +199,14 @@ CONTACT_ADVICE: tuple[Quantity, ...] = (
         for_mid_plane,
         {**_TOLD, "allowed": "contact.mid_plane", "worst": "contact.mid_plane_error"},
         "what brings the mid-plane into its tolerance",
+    ),
+    row(
+        "advice_turned",
+        "",
+        0,
+        for_turned,
+        {**_TOLD, "allowed": "contact.turned", "worst": "contact.turned_error"},
+        "what brings the turn of the insert into its tolerance",
     ),
     row(
         "advice_depth",

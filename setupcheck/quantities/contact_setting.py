@@ -10,7 +10,6 @@ from functools import lru_cache
 from typing import TYPE_CHECKING
 
 from setupcheck.ledger.account import Account
-from setupcheck.ledger.figures import MidPlane
 from setupcheck.quantities.backlash import depth_of_cut
 from setupcheck.quantities.book import Open, Quantity, in_range
 from setupcheck.quantities.contact import (
@@ -30,8 +29,9 @@ from setupcheck.quantities.contact import (
 from setupcheck.quantities.drive import WheelCut
 from setupcheck.quantities.exact_gap import row
 from setupcheck.quantities.head_setting import where_it_works
+from setupcheck.quantities.mid_plane import in_its_housing
+from setupcheck.quantities.running import insert_turned
 from setupcheck.quantities.shop import Floor
-from setupcheck.quantities.stacks import mid_plane
 
 if TYPE_CHECKING:  # imported where they are used: no other review needs them
     from setupcheck.worm.best_cutter import Recommendation, Tolerance
@@ -123,19 +123,8 @@ def mid_plane_error(asked: str, floor: Floor) -> float | Open:
 
     What the requirement `mid-plane` computes, asked or not.  Source: the ledger, worst case.
     """
-    place, found = floor.loaded.job.place, where_it_works(floor)
-    if isinstance(found, Open):
-        return found
-    if place is None or place.worm_axis is None:
-        return Open(("place.worm_axis",))
-    teeth, axis = found
-    face = floor.now(floor.loaded.ref(place.worm_axis.from_))
-    if face is None or not face.facing or floor.body(face.part) is not floor.body(teeth.part):
-        return Open(("place.worm_axis.from",), "the worm's axis is measured from no face of the wheel or its shaft")
-    figure = mid_plane(place.worm_axis, teeth, axis, face).figure
-    assert isinstance(figure, MidPlane)
-    missing = figure.undetermined()
-    return Open(missing) if missing else figure.base() + sum(push.up for push in figure.pushes())
+    figure = in_its_housing(floor)
+    return figure if isinstance(figure, Open) else figure.base() + sum(push.up for push in figure.pushes())
 
 
 def depth_error(asked: str, cut: WheelCut, floor: Floor, early: float) -> float | Open:
@@ -151,6 +140,15 @@ def depth_error(asked: str, cut: WheelCut, floor: Floor, early: float) -> float 
         return account
     missing = account.undetermined()
     return Open(missing) if missing else account.largest() + early
+
+
+def turned_error(asked: str, cut: WheelCut, floor: Floor) -> float | Open:
+    """Largest turn of the insert in its face [rad]: as it sits in the bar, and by the stop it was ground against.
+
+    Source: the job file; worm.grinding_stop.
+    """
+    found = insert_turned(floor, cut)
+    return found if isinstance(found, Open) else found.largest()
 
 
 @in_range
@@ -220,6 +218,7 @@ CONTACT_SETTING: tuple[Quantity, ...] = (
         "worst error of the depth",
         {"early": 0.0},
     ),
+    row("turned_error", "arcmin", 1, turned_error, {**ASKED, **CUT, **FLOOR}, "worst turn of the insert"),
     row("wander", "", 0, wander, {**SET, **FLOOR}, "contact round the wheel"),
     row(
         "wander_along",

@@ -282,13 +282,14 @@ def _interval(excess: Callable[[float], float], planned: float) -> tuple[float, 
 
 
 def with_cause(figure: Figure, old: Cause, new: Cause) -> Figure:
-    """The same figure with one cause replaced in all its accounts."""
+    """The same figure with one cause replaced in all its accounts, those of the figures it is made of included."""
 
-    changed: dict[str, object] = {}
-    for f in fields(figure):  # type: ignore[arg-type]
-        value = getattr(figure, f.name)
+    def other(value: object) -> object:
         if isinstance(value, Account):
-            changed[f.name] = value.with_cause(old, new)
-        elif isinstance(value, tuple) and value and isinstance(value[0], Account):
-            changed[f.name] = tuple(a.with_cause(old, new) for a in value)
+            return value.with_cause(old, new)
+        if isinstance(value, tuple):
+            return tuple(other(one) for one in value)
+        return with_cause(value, old, new) if hasattr(value, "pushes") else value  # type: ignore[arg-type]
+
+    changed = {f.name: other(getattr(figure, f.name)) for f in fields(figure)}  # type: ignore[arg-type]
     return replace(figure, **changed)  # type: ignore[type-var]

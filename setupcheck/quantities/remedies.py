@@ -11,8 +11,9 @@ from setupcheck.jobfile.models import Deviation, Dimension
 from setupcheck.jobfile.reading import LoadedJob
 from setupcheck.jobfile.setups import Setup
 from setupcheck.ledger.causes import Cause
-from setupcheck.ledger.figures import Figure, MidPlane, OverATurn, real_pushes
+from setupcheck.ledger.figures import Figure, MidPlane, OverATurn, Tooth, real_pushes
 from setupcheck.ledger.route import Pattern
+from setupcheck.ledger.running import AsItRuns
 from setupcheck.quantities.book import Open
 from setupcheck.quantities.drive import Drive, WheelCut, drive, middle, wheel_cut
 from setupcheck.quantities.gates import (
@@ -310,6 +311,10 @@ def _recorded(result: Result) -> tuple[tuple[Change, ...], Figure]:
 def _scaled(figure: Figure, cause: Cause, factor: float) -> Figure:
     """The figure with one cause so many times as large, also where it sits in the division of teeth or holes."""
     new, figure = cause.scaled(factor), with_cause(figure, cause, cause.scaled(factor))
+    if isinstance(figure, AsItRuns):
+        ring = _scaled(figure.ring, cause, factor)
+        assert isinstance(ring, Tooth)
+        return replace(figure, ring=ring)
     pattern = getattr(figure, "pattern", None)
     if not isinstance(pattern, Pattern):
         return figure

@@ -5,16 +5,17 @@ from __future__ import annotations
 import math
 from collections.abc import Callable
 
-from setupcheck.jobfile.models import Distance
 from setupcheck.ledger import figures, route, teeth
 from setupcheck.ledger.account import Account
 from setupcheck.ledger.figures import Figure
 from setupcheck.ledger.route import State
 from setupcheck.quantities.backlash import backlash
 from setupcheck.quantities.book import Open
-from setupcheck.quantities.causes import BARE, Entry, size_error
+from setupcheck.quantities.causes import BARE
+from setupcheck.quantities.mid_plane import mid_plane
 from setupcheck.quantities.relations import Built, pair, second_order, state
 from setupcheck.quantities.requirements import Stack
+from setupcheck.quantities.running import as_it_runs
 from setupcheck.quantities.shares import contact, torque
 from setupcheck.quantities.shop import Floor
 from setupcheck.quantities.worm_sizes import settled
@@ -108,7 +109,10 @@ def _teeth(floor: Floor, stack: Stack) -> Built | Open:
         driven=what in ("index-range", "index-within", "on-workpiece"),
         oblique=oblique,
     )
-    return Built(figure, second_order(lean=g.lean - r.lean, lever=abs(g.z - r.z)))
+    running = as_it_runs(floor, figure, g) if figure.driven else figure
+    if isinstance(running, Open):
+        return running
+    return Built(running, second_order(lean=g.lean - r.lean, lever=abs(g.z - r.z)))
 
 
 def _angle_of(floor: Floor, g: State) -> str:
@@ -224,22 +228,6 @@ def _mid_plane(floor: Floor, stack: Stack) -> Built | Open:
             "Write the joining as a setup of its own",
         )
     return mid_plane(place.worm_axis, g, r, face)
-
-
-def mid_plane(worm_axis: Distance, g: State, r: State, face: State) -> Built:
-    """The figure of a mid-plane: teeth g about the axis r, the worm's axis at a distance from a face, all of one body.
-
-    Source: geometry, as in ledger.figures.
-    """
-    assert g.pattern is not None
-    middle, error = size_error(
-        worm_axis.length, Entry("housing, face to worm axis", None, "place.worm_axis.length", "")
-    )
-    sign = float(face.facing)
-    axial = g.axial - face.axial - error * sign
-    axial = axial.plus_constant(g.z - face.z - sign * middle)
-    lean = g.lean - r.lean
-    return Built(figures.MidPlane(axial, lean, g.pattern), second_order(lean=lean, lever=g.pattern.radius))
 
 
 def _length(floor: Floor, stack: Stack) -> Built | Open:

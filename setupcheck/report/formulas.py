@@ -32,16 +32,18 @@ FORMULAS: dict[str, tuple[str, str]] = {
     ),
     "index-range": (
         "largest less smallest angle of the wheel over one turn, the worm driving one flank = (2 e / cos(pressure angle) + "
-        "what dividing adds over the turn) / pitch radius",
+        "what dividing adds over the turn) / pitch radius; with the exact gap + its transmission error as planned and what "
+        "tilt, mid-plane, depth and turn of the insert add to it at their worst",
         FLANK,
     ),
     "index-within": (
-        "± half of the index range: (e / cos(pressure angle) + half of what dividing adds over the turn) / pitch radius",
+        "± half of the index range: (e / cos(pressure angle) + half of what dividing adds over the turn) / pitch radius; with "
+        "the exact gap + half of its transmission error, and of what the setting of the cutter adds to it",
         FLANK,
     ),
     "on-workpiece": (
         "the index range as an arc on the work: (2 e / cos(pressure angle) + what dividing adds over the turn) x "
-        "diameter on the work / pitch diameter",
+        "diameter on the work / pitch diameter; with the exact gap its transmission error counts as well",
         FLANK,
     ),
     "position": (

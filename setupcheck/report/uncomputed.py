@@ -41,6 +41,7 @@ NOT_LOOKED_AT: Mapping[str, Mapping[str, str]] = {
         "width": "width of the insert {said}",
         "width_at": "height {said} of that width",
         "grinding": "grinding of the insert, {said} (looked at only with `contact: exact` under mesh)",
+        "turned": "turn of the insert {said} (looked at only with `contact: exact` under mesh)",
         "profile": "measured profile of the insert (looked at only with `contact: exact` under mesh)",
         "diameter": "diameter {said}",
         "speed": "speed {said}",
@@ -167,7 +168,7 @@ def _of_the_wheel(loaded: LoadedJob) -> Iterator[str]:
             yield from (f"{path}.depth", f"{path}.depth_from", "worm.profile", "worm.thread_thickness", "mesh.mark")
             yield from (f"cutters.{cut.cutter}.tip_radius", f"cutters.{cut.cutter}.insert")
             if job.mesh.contact is not None:
-                yield from (f"cutters.{cut.cutter}.{key}" for key in ("grinding", "profile", "width", "width_at"))
+                yield from (f"cutters.{cut.cutter}.{key}" for key in ("grinding", "profile", "turned", "width", "width_at"))
             if cut.depth_from is not None:
                 touched = loaded.ref(cut.depth_from.surface, wheel.part)
                 yield f"parts.{touched.part}.surfaces.{touched.surface}.radius"

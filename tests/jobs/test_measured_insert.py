@@ -21,7 +21,7 @@ from tests.bad_input.ring import refused
 from .worm_jobs import NINETY, TWO_STARTS
 
 JOBS = {"two starts": TWO_STARTS, "ninety": NINETY}
-JUDGED_BY_CONTACT = {"CUTTER-011", "CUTTER-012", "CUTTER-014", "TILT-009", "MESH-009"}
+JUDGED_BY_CONTACT = {"INSERT-007", "CUTTER-011", "CUTTER-012", "CUTTER-014", "TILT-009", "MESH-009"}
 
 
 @cache

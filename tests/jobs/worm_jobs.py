@@ -37,7 +37,7 @@ worm:
   thread_thickness: {{measured: {math.pi * module / 2.0!r} mm, uncertainty: 1 um}}
 mesh: {{wheel: wheel.teeth, centre_distance: {(worm + d2) / 2.0!r} ±0.01, shaft_angle_error: 0.5', contact: exact, error_budget: {budget}}}
 cutters:
-  fly: {{kind: single-point, tip_radius: {radius!r}, insert: envelope}}
+  fly: {{kind: single-point, tip_radius: {radius!r}, insert: envelope, turned: 1'}}
 machines:
   lathe: {{kind: lathe, axis_runout: 2 um}}
   head: {{kind: dividing-head, worm_ratio: 40, nose_points: left, cutter_stands: front, axis_runout: 2 um}}

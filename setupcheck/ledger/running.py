@@ -1,0 +1,65 @@
+"""Index figures of a wheel that runs with its worm: what the ring's teeth are off, and what each gap adds within its pitch.
+
+A worm that stops anywhere sees both: the ring's errors change from tooth to tooth, the error of a gap that is no conjugate one
+repeats with every tooth. Lengths mm, angles rad.
+"""
+
+from __future__ import annotations
+
+from typing import TYPE_CHECKING
+
+import numpy as np
+from numpy.typing import NDArray
+
+from setupcheck.ledger.causes import Cause
+from setupcheck.ledger.figures import Figure, Push, Tooth, merged
+from setupcheck.record import record
+
+if TYPE_CHECKING:
+    from setupcheck.ledger.combine import Draws
+
+Reals = NDArray[np.floating]
+
+
+@record(eq=False)
+class AsItRuns:
+    """An index figure with the transmission error of its gaps.
+
+    ring     figure of the teeth alone, its factor from arc to the figure's unit
+    planned  the error of a gap cut as planned, its known mean as an arc [mm]
+    off      what each setting may be off its plan, figures that start at zero [mm or rad]
+    rises    how much error each of them adds [arc for each mm or rad]
+    The range of a sum is at most the sum of the ranges, and the error is taken as straight between the plan and the worst
+    setting, above which it never lies as it grows faster and faster.  Source: geometry, derived here.
+    """
+
+    ring: Tooth
+    planned: Cause
+    off: tuple[Figure, ...]
+    rises: tuple[float, ...]
+    signed: bool = False
+
+    def _added(self) -> list[tuple[Figure, float]]:
+        return [(one, rise * self.ring.factor) for one, rise in zip(self.off, self.rises, strict=True)]
+
+    def base(self) -> float:
+        return self.ring.base() + sum(rise * one.base() for one, rise in self._added())
+
+    def pushes(self) -> list[Push]:
+        known = self.planned.mean.real * self.ring.factor
+        settings = [
+            [Push(p.cause, rise * p.down, rise * p.up, rise * p.known) for p in one.pushes()]
+            for one, rise in self._added()
+            if rise > 0.0
+        ]
+        return merged(self.ring.pushes(), [Push(self.planned, 0.0, known, known)], *settings)
+
+    def undetermined(self) -> tuple[str, ...]:
+        return tuple(dict.fromkeys(m for one in (self.ring, *self.off) for m in one.undetermined()))
+
+    def sample(self, draws: Draws) -> Reals:
+        total = self.ring.sample(draws) + self.planned.mean.real * self.ring.factor
+        for one, rise in self._added():
+            if rise > 0.0:
+                total = total + rise * one.sample(draws)
+        return np.asarray(total)
