@@ -82,13 +82,11 @@ def measured_gap(floor: Floor, found: Drive, cut: WheelCut | None) -> MeasuredGa
             ball=ball,
         )
     except ValueError:
-        return Open((PATH,), f"{both} fits no gap of this wheel: measure it again, and the ball")
+        return Open(because=f"{both} fits no gap of this wheel: measure it again, and the ball")
     if cut is not None:
         root, tip = 2.0 * cut.root, 2.0 * (cut.root + (cut.cut.depth or 0.0))
         if size - 2.0 * ball <= root or at.contact_diameter <= root:
-            return Open(
-                (PATH,), f"{both} would rest on the bottom of the gap, at {floor.size(root)}: take larger balls"
-            )
+            return Open(because=f"{both} would rest on the bottom of the gap, at {floor.size(root)}: take larger balls")
         if at.contact_diameter >= tip:
-            return Open((PATH,), f"{both} would sit on the tips of the teeth, at {floor.size(tip)}: take smaller balls")
+            return Open(because=f"{both} would sit on the tips of the teeth, at {floor.size(tip)}: take smaller balls")
     return MeasuredGap(size, ball, given.uncertainty, at.gap, at.per_size, error * at.per_size)
