@@ -97,6 +97,11 @@ class Compared:
     allowed: float
     slope: float
 
+    def told(self) -> str:
+        """Both sizes in words."""
+        made, is_ = show(self.size, "mm", 4), show(self.measured.size, "mm", 4)
+        return f"{made} over balls by insert, depth and growth, {is_} measured"
+
     @property
     def wider(self) -> float:
         """Gap measured less the gap that they make [mm]."""

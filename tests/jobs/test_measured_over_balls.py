@@ -12,6 +12,7 @@ from setupcheck.jobfile.reading import read_job_text
 from setupcheck.ledger.combine import Combined
 from setupcheck.quantities.book import Known, Open
 from setupcheck.quantities.judged import Result
+from setupcheck.report.remedies import remedy_in_words
 from setupcheck.report.text import as_text
 from setupcheck.report.uncomputed import uncomputed
 from setupcheck.report.working import as_working
@@ -253,3 +254,43 @@ def test_a_size_over_balls_that_nothing_looks_at_is_told() -> None:
 def test_a_job_without_a_size_over_balls_has_nothing_to_compare() -> None:
     assert finding(with_ball(SPINDLE), "MESH-012") is None
     assert answer(with_ball(SPINDLE), "mesh.measured_gap") is None
+
+
+def remedies(text: str) -> str:
+    found = judged(text)
+    told = [remedy_in_words(found, f) for f in found.evaluation.findings if f.rule.startswith("STACK-") and f.remedy]
+    return " ".join(told)
+
+
+@pytest.mark.parametrize(
+    ("off", "limits", "says"),
+    [
+        # 15.7 to 79.2 um, the middle of 25 to 150 is 87.5: 40.0 um over 2 tan(20 deg)
+        (0.100, "[25 um, 150 um]", "Cut the gaps 55 um deeper on the radius with the same insert, and measure again (mesh.over_balls)."),
+        (-0.100, "[25 um, 150 um]", "Gaps are not cut narrower: bring the axes 54 um closer together (mesh.centre_distance), or cut another wheel."),
+        (0.100, "[70 um, 100 um]", ""),
+    ],
+)  # fmt: skip
+def test_a_backlash_beside_its_limits_is_told_the_depth_or_the_centre_distance(
+    off: float, limits: str, says: str
+) -> None:
+    text = measured(SPINDLE, off).replace("between: [25 um, 150 um]", f"between: {limits}")
+    if says:
+        assert says in remedies(text)
+    else:  # its span is wider than that
+        assert "deeper" not in remedies(text)
+        assert "closer together" not in remedies(text)
+
+
+def test_the_depth_told_typed_back_as_a_new_measurement_puts_the_backlash_in_the_middle() -> None:
+    deep = 0.055 * 2.0 * math.tan(math.radians(20.0))
+    rate = number(measured(SPINDLE, 0.100), "mesh.measured_gap_uncertainty") / 0.008
+    text = measured(SPINDLE, 0.100 - deep / rate)
+    assert middle(text) == pytest.approx(0.0875, abs=0.0005)
+    assert "pass" == judged(text).verdict
+
+
+def test_with_one_limit_the_depth_told_is_just_enough() -> None:
+    text = measured(SPINDLE, 0.100).replace("between: [25 um, 150 um]", "at_least: 25 um")
+    lacks = (0.025 - backlash(text)[0]) / 2.0 / math.tan(math.radians(20.0))
+    assert f"Cut the gaps {math.ceil(1e3 * lacks)} um deeper" in remedies(text)
