@@ -2,7 +2,7 @@
 
 One gap with the thread in its middle, circular, at r2:
     j = s2 - s_x + 2 (a - r1 - r2 + depth) tan(alpha) - growth (tan(alpha) - s_x/d2) + temperature -+ 2 (e + r_j) tan(alpha)
-(the first and the growth as made; measured over balls, the gap s2 holds depth and growth, `gap_finished`)
+of a wheel measured over balls s2 is the gap as measured, which holds depth and growth already (`gap_finished`),
 and over the whole mesh less what flanks lose that no longer fit each other (`_misfit`). The same numbers come out of a rack
 in gaps, point by point, in tests/unit/worm.
 """
