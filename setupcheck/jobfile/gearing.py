@@ -23,6 +23,9 @@ SMALLEST_THROAT = 0.8  # of the pitch circle, for wheels of few teeth; our scree
 LARGEST_CUTTER = (
     8.0  # tip radii of the worm; far above every fly cutter, below a slip of mm and inch; our screening choice
 )
+FARTHEST_BALL = (
+    6.0  # modules that both centres lie off the pitch circle at most, across; 3 in a gap; our screening choice
+)
 SAME = 1e-3  # relative; two figures for one module that differ by more were not rounded apart; our screening choice
 
 
@@ -30,6 +33,7 @@ def unlikely(drawing: Drawing) -> Iterator[Miss]:
     """Sizes of the worm, its wheel and the cutters of the wheel that contradict each other."""
     worm, wheel = map_of(drawing.data.get("worm")), drawing.ref(map_of(drawing.data.get("mesh")).get("wheel"))
     yield from _worm(drawing, worm)
+    yield from _balls(drawing, map_of(drawing.data.get("mesh")), drawing.surface(wheel))
     for part, surfaces in drawing.parts.items():
         yield from _throats(drawing, part, surfaces)
     teeth = drawing.surface(wheel)
@@ -85,6 +89,29 @@ def _measured(
         elif wire > size - wire:
             says = f"wires of {drawing.shown(wire)} are larger than what they leave of {drawing.shown(size)}"
             yield Miss(("worm", "over_wires", "wire"), f"{says}. Write the diameter of one wire")
+
+
+def _balls(drawing: Drawing, mesh: Mapping[str, object], teeth: Surface | None) -> Iterator[Miss]:
+    """A size over balls without its ball, with two of them, or far from the wheel's circle."""
+    given, path = mesh.get("over_balls"), ("mesh", "over_balls")
+    if not isinstance(given, Mapping):
+        return
+    if "ball" not in given and "ball" not in mesh:
+        says = "a size over balls needs the diameter of a ball"
+        yield Miss(path, f"{says}. Write it as in {{measured: 124.964, ball: 3.50, uncertainty: 8 um}}")
+        return
+    mine, planned = drawing.length(given.get("ball")), drawing.length(mesh.get("ball"))
+    if mine is not None and planned is not None and mine != planned:
+        says = f"measured over balls of {drawing.shown(mine)}, and mesh.ball is {drawing.shown(planned)}"
+        yield Miss((*path, "ball"), f"{says}. Write the ball once, the one that was measured with")
+    size, ball = drawing.length(given.get("measured")), mine if mine is not None else planned
+    if size is None or ball is None or ball <= 0.0 or not isinstance(teeth, Toothing):
+        return
+    module = teeth.module if teeth.module is not None else teeth.on_circle / teeth.count
+    if abs(size - ball - teeth.on_circle) > FARTHEST_BALL * module:
+        says = f"{drawing.shown(size)} over balls of {drawing.shown(ball)} does not fit teeth on a circle of"
+        hint = f"{drawing.shown(teeth.on_circle)}. Write the size over both balls, and the diameter of one"
+        yield Miss((*path, "measured"), f"{says} {hint}")
 
 
 def _thickness(drawing: Drawing, node: object) -> float | None:

@@ -82,6 +82,26 @@ class OverWires(Dimension):
         return given
 
 
+class OverBalls(Dimension):
+    """Size of the finished wheel over two balls: `{measured: 124.964, ball: 3.50, uncertainty: 8 um}` [mm].
+
+    ball  diameter of one of them; left out, that of `mesh.ball`
+    """
+
+    ball: Size | None = None
+
+    @model_validator(mode="before")
+    @classmethod
+    def it_is_measured(cls, given: object) -> object:
+        planned = {"nominal", "lower", "upper", "fit"}
+        if not isinstance(given, dict) or "measured" not in given or planned & given.keys():
+            raise ValueError(
+                "a size over balls counts only as measured, for what is planned follows from insert and depth. "
+                "Write it as in {measured: 124.964, ball: 3.50, uncertainty: 8 um}"
+            )
+        return given
+
+
 def _above_zero(given: Dimension, info: ValidationInfo) -> Dimension:
     if given.value <= 0.0:
         raise ValueError(f"{in_file_units(given.value, info)} is no length of a thread. Write a length above zero")
@@ -133,7 +153,8 @@ class Worm(Shop):
 class Mesh(Shop):
     """Worm and wheel where they work. `shift` is the wheel's profile shift factor, `serves_at` the drive's temperatures.
 
-    ball     diameter of the balls that the finished wheel is measured over [mm]
+    ball     diameter of the balls that the size of the finished wheel is planned for [mm]
+    over_balls  that size as measured
     contact  `exact`: contact, transmission error and insert from the exact gap, which takes a second more
     error_budget  transmission error that the cut may leave, along the reference circle, end to end over one pitch [mm]
     mark     what blue showed on the finished wheel
@@ -146,6 +167,13 @@ class Mesh(Shop):
     housing: Housing | None = None
     serves_at: Service | None = None
     ball: Size | None = None
+    over_balls: OverBalls | None = None
     contact: Literal["exact"] | None = None
     error_budget: Budget | None = None
     mark: Mark | None = None
+
+    @property
+    def ball_used(self) -> float | None:
+        """Diameter of the balls, wherever it is stated [mm]; the reader refuses two that differ."""
+        measured = self.over_balls.ball if self.over_balls is not None else None
+        return self.ball if self.ball is not None else measured

@@ -2,6 +2,7 @@
 
 One gap with the thread in its middle, circular, at r2:
     j = s2 - s_x + 2 (a - r1 - r2 + depth) tan(alpha) - growth (tan(alpha) - s_x/d2) + temperature -+ 2 (e + r_j) tan(alpha)
+of a wheel measured over balls s2 is the gap as measured, which holds depth and growth already (`gap_finished`),
 and over the whole mesh less what flanks lose that no longer fit each other (`_misfit`). The same numbers come out of a rack
 in gaps, point by point, in tests/unit/worm.
 """
@@ -25,6 +26,7 @@ from setupcheck.quantities.book import Open, OutOfRange
 from setupcheck.quantities.causes import Entry, length_error, size_error
 from setupcheck.quantities.cutter_shape import insert_width, tilt_of
 from setupcheck.quantities.drive import Drive, WheelCut, drive, wheel_cut
+from setupcheck.quantities.gap_measured import measured_gap
 from setupcheck.quantities.joining import JointSizes, interference_least, interference_most, sizes
 from setupcheck.quantities.relations import Built, pair, second_order
 from setupcheck.quantities.requirements import Stack
@@ -70,17 +72,16 @@ def backlash(floor: Floor, stack: Stack) -> Built | Open:
     factor = along_of(floor, stack, found)
     g, r = both
     served = _served(floor, found)
-    gap, depth = _gap(floor, made), depth_of_cut(floor, made, g)
-    mesh, grown = _mesh(floor, found), _growth(floor, found)
+    slope = 2.0 * math.tan(found.pressure_angle)
+    gap, depth, mesh = gap_finished(floor, made, g), depth_of_cut(floor, made, g), _mesh(floor, found)
+    grown = _growth(floor, found)
     opened = [x for x in (gap, depth, mesh, grown, served) if isinstance(x, Open)]
     if opened:
         return _merged(opened)
     assert isinstance(gap, Account) and isinstance(depth, Account) and isinstance(mesh, Account)
     assert isinstance(grown, Account) and isinstance(served, Served)
-    slope = 2.0 * math.tan(found.pressure_angle)
     strain = grown * (1.0 / found.wheel_diameter) + served.strain
-    total = gap + mesh + depth * slope - grown * (slope / 2.0 - found.thread / found.wheel_diameter) + served.moved
-    total -= _misfit(made, depth, strain)
+    total = gap + mesh + served.moved - _misfit(made, depth, strain)
     figure = OverATurn(total * factor, g.offset - r.axis_at(g.z), slope * factor, g.pattern)
     return Built(figure, second_order(lean=g.lean - r.lean, lever=abs(g.z - r.z)))
 
@@ -127,6 +128,32 @@ def gap_of_insert(floor: Floor, cut: WheelCut, width: float) -> float:
         if abs(miss) < 1e-9:
             break
     return gap
+
+
+def gap_finished(floor: Floor, cut: WheelCut, teeth: State) -> Account | Open:
+    """Gap of the finished wheel: as measured over balls, else as it is made. Source: the job file, worm.over_balls.
+
+    The size measured holds what insert, depth and growth do to the gap, but not what they do to the flanks' form (`_misfit`).
+    """
+    known = measured_gap(floor, cut.drive, cut)
+    if known is None:
+        return gap_as_made(floor, cut, teeth)
+    return known if isinstance(known, Open) else known.account(teeth.pattern, 2.0 * math.tan(cut.drive.pressure_angle))
+
+
+def gap_as_made(floor: Floor, cut: WheelCut, teeth: State) -> Account | Open:
+    """Gap at the reference circle that insert, depth and growth make: s2 + 2 d tan(alpha) - growth (tan(alpha) - s/d2) [mm].
+
+    Source: rack rolling on the wheel's reference circle, derived here.
+    """
+    found = cut.drive
+    gap, depth, grown = _gap(floor, cut), depth_of_cut(floor, cut, teeth), _growth(floor, found)
+    opened = [x for x in (gap, depth, grown) if isinstance(x, Open)]
+    if opened:
+        return _merged(opened)
+    assert isinstance(gap, Account) and isinstance(depth, Account) and isinstance(grown, Account)
+    slope = 2.0 * math.tan(found.pressure_angle)
+    return gap + depth * slope - grown * (slope / 2.0 - found.thread / found.wheel_diameter)
 
 
 def _gap(floor: Floor, cut: WheelCut) -> Account | Open:

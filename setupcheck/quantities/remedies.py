@@ -15,6 +15,7 @@ from setupcheck.ledger.figures import Figure, MidPlane, OverATurn, Tooth, real_p
 from setupcheck.ledger.route import Pattern
 from setupcheck.ledger.running import AsItRuns
 from setupcheck.quantities.book import Open
+from setupcheck.quantities.cut_again import CutAgain, cut_again
 from setupcheck.quantities.drive import Drive, WheelCut, drive, middle, wheel_cut
 from setupcheck.quantities.gates import (
     FINE,
@@ -146,7 +147,7 @@ class Wider:
 
 @record
 class Remedy:
-    """What to change: single entries, the datum of one hold, a shim, an insert. All empty where nothing simple does it.
+    """What to change: single entries, the datum of one hold, a shim, an insert, a depth. All empty where nothing simple does it.
 
     grip    the joint's entry that says where its hub bites first
     own     the dividing head's own record in place of typical values: one change for each of its errors
@@ -157,6 +158,7 @@ class Remedy:
     shim: Shim | None = None
     grip: str = ""
     insert: Wider | None = None
+    again: CutAgain | None = None
     own: tuple[Change, ...] = ()
 
 
@@ -164,7 +166,7 @@ def remedies(loaded: LoadedJob, floor: Floor, results: Mapping[str, Result]) -> 
     """The smallest change for every stack outside its limit, one that serves all of them where they name the same entry.
 
     A length that only the gap behind a cooling hub spoils lets the shoulder end grip first; a mid-plane that another shim
-    centres takes that shim; a backlash that only stands beside its limits takes another insert.
+    centres takes that shim; a backlash that only stands beside its limits takes another insert, or more depth.
     Else in this order: the biggest cause cut back by itself; another datum that the stack already runs through, with the
     dial reading that every requirement then needs; the head's own record in place of typical dividing errors; the two
     biggest causes cut back.  Causes of bought parts and
@@ -205,6 +207,9 @@ def _remedy(loaded: LoadedJob, floor: Floor, result: Result, trials: dict[tuple[
     shim = _shimmed(floor, result)
     if shim is not None:
         return Remedy(shim=shim)
+    again = cut_again(floor, result)
+    if again is not None:
+        return Remedy(again=again)
     insert = _another_insert(loaded, floor, result)
     if insert is not None:
         return Remedy(insert=insert)

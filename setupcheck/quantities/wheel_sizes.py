@@ -1,4 +1,4 @@
-"""The wheel's sizes that follow from the worm, its size over balls, and a backlash told in three ways. Lengths mm, rad."""
+"""The wheel's sizes that follow from the worm, and a backlash told in three ways. Lengths mm, rad."""
 
 from __future__ import annotations
 
@@ -6,15 +6,15 @@ import math
 
 from setupcheck.jobfile.worm import Mesh
 from setupcheck.notation import show
-from setupcheck.quantities.backlash import along_of, gap_of_insert
+from setupcheck.quantities.backlash import along_of
 from setupcheck.quantities.book import Open, OutOfRange, Quantity, in_range
-from setupcheck.quantities.drive import Drive, WheelCut, drive, middle, wheel_cut
+from setupcheck.quantities.drive import Drive, drive
 from setupcheck.quantities.joint_shape import rim_over
 from setupcheck.quantities.judged import Result
 from setupcheck.quantities.shop import Floor
 from setupcheck.quantities.worm_sizes import SAME, settled, starts_of, told, toothing
 from setupcheck.record import record
-from setupcheck.worm import geometry, over_balls
+from setupcheck.worm import geometry
 
 
 @record
@@ -224,70 +224,6 @@ def circle_advice(floor: Floor, of: Wheel) -> str | None:
     )
 
 
-# -- over balls ---------------------------------------------------------------------------------------------------------
-
-
-def pair(floor: Floor) -> Drive | Open | None:
-    """Worm and wheel as numbers; None without a ball to measure over. Source: the job file."""
-    mesh = floor.loaded.job.mesh
-    return drive(floor) if mesh is not None and mesh.ball is not None else None
-
-
-def best_ball(floor: Floor) -> float | Open | None:
-    """Ball that touches near the reference circle [mm], whatever ball is stated. Source: worm.over_balls."""
-    found = drive(floor)
-    if not isinstance(found, Drive):
-        return found
-    with in_range:
-        return over_balls.best_ball(
-            wheel_diameter=found.wheel_diameter,
-            pressure_angle=found.pressure_angle,
-            lead_angle=found.lead_angle,
-            gap=_tight(found),
-        )
-
-
-def _tight(found: Drive) -> float:
-    """Gap at the reference circle that just takes the thread at this centre distance [mm]: s - 2 (a - r1 - r2) tan(alpha)."""
-    apart = found.centre_distance - (found.reference_diameter + found.wheel_diameter) / 2.0
-    return found.thread - 2.0 * apart * math.tan(found.pressure_angle)
-
-
-def over_tight(floor: Floor, mesh: Mesh, found: Drive) -> float:
-    """Size over the balls of a wheel that has no backlash in its housing [mm]. Source: worm.over_balls."""
-    return _over(floor, mesh, found, _tight(found))
-
-
-def over_planned(floor: Floor, mesh: Mesh, found: Drive) -> float | Open | None:
-    """Size over the balls of a wheel cut by the insert as stated, at its planned depth [mm].
-
-    None where no single point cuts it.  Source: worm.over_balls; worm.insert turned round.
-    """
-    cut = wheel_cut(floor, found)
-    if not isinstance(cut, WheelCut):
-        return cut
-    if cut.cutter.width is None:
-        return Open((f"{cut.cutter_path}.width",))
-    return _over(floor, mesh, found, gap_of_insert(floor, cut, middle(cut.cutter.width)))
-
-
-def _over(floor: Floor, mesh: Mesh, found: Drive, gap: float) -> float:
-    assert mesh.ball is not None
-    with in_range:
-        seat = over_balls.over_balls(
-            starts=found.starts,
-            axial_module=found.module,
-            teeth=found.teeth,
-            pitch_diameter=found.pitch_diameter,
-            pressure_angle=found.pressure_angle,
-            gap=gap,
-            ball=mesh.ball,
-        )
-    if abs(seat.contact_diameter - found.wheel_diameter) > 1.8 * found.module:
-        raise OutOfRange(f"a ball of {show(mesh.ball, 'mm', 3)} touches beside the flanks")
-    return seat.size
-
-
 # -- backlash, told as arc and as angles ----------------------------------------------------------------------------------
 
 
@@ -376,10 +312,6 @@ WHEEL = (
     _row("teeth", "1", 0, teeth, _OF, "teeth of the wheel"),
     _row("fewest_teeth", "1", 0, fewest, {**_FLOOR, **_OF}, "least count of teeth that is not undercut"),
     _row("circle_advice", "", 0, circle_advice, {**_FLOOR, **_OF}, "what a pitch circle that misses may come from"),
-    _row("pair", "", 0, pair, _FLOOR, "worm and wheel as numbers, where a ball is stated"),
-    _row("best_ball", "mm", 2, best_ball, _FLOOR, "ball that touches near the reference circle"),
-    _row("over_balls", "mm", 4, over_planned, {**_MESH, "found": "mesh.pair"}, "size over balls as planned"),
-    _row("over_balls_tight", "mm", 4, over_tight, {**_MESH, "found": "mesh.pair"}, "size over balls without backlash"),
     Quantity(
         "mesh.arcs",
         "stack",

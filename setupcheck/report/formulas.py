@@ -79,7 +79,8 @@ FORMULAS: dict[str, tuple[str, str]] = {
         "gap that the insert cuts - thread of the worm + 2 x (centre distance - both pitch radii + error of depth) x "
         "tan(pressure angle) - growth of the hub x (tan(pressure angle) - thread / pitch circle) + what the temperature of "
         "the drive does, less and plus 2 e tan(pressure angle) over a turn; less what flanks lose that no longer fit each "
-        "other: 2 w (error of depth / pitch radius + error of pitch), w how far from the middle a gap is touched",
+        "other: 2 w (error of depth / pitch radius + error of pitch), w how far from the middle a gap is touched. A gap "
+        "measured over balls takes the place of insert, depth and growth, but not of what they do to the flanks",
         "a rack that rolls on the wheel's pitch circle, derived here",
     ),
     "contact-length": (

@@ -64,6 +64,12 @@ def _worked_out(remedy: Remedy, *, inches: bool) -> str:
         unit, digits = ("in", 4) if inches else ("mm", 3)
         wide, now = (show(value, unit, digits) for value in (remedy.insert.needed, remedy.insert.now))
         return f"Make the insert {wide} wide instead of {now} ({remedy.insert.path})."
+    if remedy.again is not None:
+        unit, digits = ("thou", 1) if inches else ("um", 0)
+        more = show(abs(remedy.again.deeper), unit, digits)
+        if remedy.again.deeper > 0.0:
+            return f"Cut the gaps {more} deeper on the radius with the same insert, and measure again ({remedy.again.path})."
+        return f"Gaps are not cut narrower: bring the axes {more} closer together (mesh.centre_distance), or cut another wheel."
     told = []
     if remedy.own:
         each = (

@@ -31,6 +31,7 @@ NOT_LOOKED_AT: Mapping[str, Mapping[str, str]] = {
         "shaft_angle_error": "error of the shaft angle {said}",
         "housing": "housing of {said}",
         "serves_at": "serves from {said}",
+        "over_balls": "size over balls {said} (of a wheel cut by a single point only)",
         "contact": "contact {said} (of a wheel cut by a single point only)",
         "error_budget": "error budget {said} (held against `contact: exact` only)",
         "mark": "mark of blue ({said})",
@@ -166,6 +167,7 @@ def _of_the_wheel(loaded: LoadedJob) -> Iterator[str]:
                 continue
             path = f"setups.{setup.op}.cut.{name}"
             yield from (f"{path}.depth", f"{path}.depth_from", "worm.profile", "worm.thread_thickness", "mesh.mark")
+            yield "mesh.over_balls"
             yield from (f"cutters.{cut.cutter}.tip_radius", f"cutters.{cut.cutter}.insert")
             if job.mesh.contact is not None:
                 yield from (f"cutters.{cut.cutter}.{key}" for key in ("grinding", "profile", "turned", "width", "width_at"))
@@ -174,8 +176,9 @@ def _of_the_wheel(loaded: LoadedJob) -> Iterator[str]:
                 yield f"parts.{touched.part}.surfaces.{touched.surface}.radius"
             if job.mesh.contact is not None:
                 yield from ("mesh.contact", "mesh.error_budget", f"{path}.depth_error")
-            if asked:
+            if asked or job.mesh.over_balls is not None:
                 yield from (f"{path}.depth_error", f"cutters.{cut.cutter}.width", f"cutters.{cut.cutter}.width_at")
+            if asked:
                 yield from ("worm.material", "mesh.housing", "mesh.serves_at", f"parts.{wheel.part}.properties")
 
 

@@ -65,6 +65,11 @@ SENTENCES: Sequence[tuple[str, str, str]] = (
         "wheel",
         "over balls {mesh.over_balls} as planned, {mesh.over_balls_tight} without backlash; best ball {mesh.best_ball}",
     ),
+    (
+        "mesh",
+        "wheel",
+        "measured over balls it has gaps of {mesh.measured_gap} at the reference circle, {mesh.planned_gap} by insert and depth",
+    ),
     ("mesh", "mark", "{mark.says}"),
     ("mesh", "mark", "{mark.next}"),
     (

@@ -6,6 +6,7 @@ Balls, not pins: the gaps of a worm wheel curve round the worm, and a straight p
 from __future__ import annotations
 
 import math
+from collections.abc import Callable
 
 from setupcheck.record import record
 from setupcheck.worm.geometry import above_zero, steep_enough
@@ -37,6 +38,42 @@ class _Gap:
         inward = ball_radius / math.sqrt(1.0 + along_y**2 + along_z**2)
         cx, cy = x - inward, y + inward * along_y
         return math.atan2(cx, cy) - (x - rack) / self.wheel_radius, math.hypot(cx, cy), z + inward * along_z
+
+    def rise(self, y: float, z: float, ball_radius: float) -> float:
+        """How far a ball that touches at (y, z) comes out when its gap closes by 1 mm of arc, d r_c/d(-s2): positive.
+
+        Either flank turns about the wheel by half of it over r2. Its normal n passes through the ball's centre, so the flank
+        drives the centre by r_c n_t per radian along n, and the centre can only move outwards: d r_c = r_c n_t d(turn)/n_r.
+        """
+        h = self.worm_radius + self.wheel_radius - y
+        rho = math.hypot(h, z)
+        along_y = self.slope * h / rho - self.p * z / rho**2
+        along_z = -self.slope * z / rho - self.p * h / rho**2
+        x = (self.wheel_radius - y) / along_y
+        inward = ball_radius / math.sqrt(1.0 + along_y**2 + along_z**2)
+        cx, cy = x - inward, y + inward * along_y
+        across, outward = cy + along_y * cx, along_y * cy - cx  # of the normal (1, -X_y) times r_c, towards the ball
+        return math.hypot(cx, cy) * across / outward / (2.0 * self.wheel_radius)
+
+    def seat(self, of: Callable[[float, float], tuple[float, float]], module: float) -> tuple[float, float] | None:
+        """Rack point where both values of `of` are zero, by Newton's steps from the pitch point; None where there is none."""
+        y, z, step = self.wheel_radius, 0.0, 1e-6 * module
+        for _ in range(50):
+            (first, second), in_y, in_z = of(y, z), of(y + step, z), of(y, z + step)
+            ay, az = (in_y[0] - first) / step, (in_z[0] - first) / step
+            hy, hz = (in_y[1] - second) / step, (in_z[1] - second) / step
+            turns = ay * hz - az * hy
+            if turns == 0.0:
+                return None
+            dy, dz = (az * second - hz * first) / turns, (hy * first - ay * second) / turns
+            if not max(abs(dy), abs(dz)) < self.wheel_radius:
+                return None
+            y, z = y + dy, z + dz
+            if not abs(y - self.wheel_radius) < 3.0 * module or not abs(z) < self.worm_radius:
+                return None
+            if max(abs(dy), abs(dz)) < 1e-12 * self.wheel_radius:
+                return y, z
+        return None
 
 
 @record
@@ -82,26 +119,83 @@ def over_balls(
         slope=math.tan(pressure_angle),
         half=gap / 2.0,
     )
-    y, z, step = at.wheel_radius, 0.0, 1e-6 * axial_module
-    for _ in range(50):
-        angle, radius, height = at.centre(y, z, ball / 2.0)
-        in_y, in_z = at.centre(y + step, z, ball / 2.0), at.centre(y, z + step, ball / 2.0)
-        ay, az = (in_y[0] - angle) / step, (in_z[0] - angle) / step
-        hy, hz = (in_y[2] - height) / step, (in_z[2] - height) / step
-        turns = ay * hz - az * hy
-        if turns == 0.0:
-            break
-        dy, dz = (az * height - hz * angle) / turns, (hy * angle - ay * height) / turns
-        if not max(abs(dy), abs(dz)) < at.wheel_radius:
-            break
-        y, z = y + dy, z + dz
-        if not abs(y - at.wheel_radius) < 3.0 * axial_module or not abs(z) < at.worm_radius:
-            break
-        if max(abs(dy), abs(dz)) < 1e-12 * at.wheel_radius:
-            _, radius, _ = at.centre(y, z, ball / 2.0)
-            opposite = math.cos(math.pi / (2.0 * teeth)) if teeth % 2 else 1.0
-            return OverBalls(2.0 * radius * opposite + ball, 2.0 * _touched(at, y, z), abs(z))
-    raise ValueError(f"a ball of {ball:g} mm finds no seat in the gap")
+
+    def seated(y: float, z: float) -> tuple[float, float]:
+        angle, _, height = at.centre(y, z, ball / 2.0)
+        return angle, height
+
+    found = at.seat(seated, axial_module)
+    if found is None:
+        raise ValueError(f"a ball of {ball:g} mm finds no seat in the gap")
+    _, radius, _ = at.centre(*found, ball / 2.0)
+    return OverBalls(2.0 * radius * _opposite(teeth) + ball, 2.0 * _touched(at, *found), abs(found[1]))
+
+
+def _opposite(teeth: int) -> float:
+    """Share of the distance of two opposite gaps that the gaps measured over have: cos(90 deg/z) for an odd count."""
+    return math.cos(math.pi / (2.0 * teeth)) if teeth % 2 else 1.0
+
+
+@record
+class GapOverBalls:
+    """The gap of a wheel from its size over balls: arc at the reference circle [mm], its change per mm of size (below zero),
+    and the diameter of the wheel where a ball touches [mm]."""
+
+    gap: float
+    per_size: float
+    contact_diameter: float
+
+
+def gap_over_balls(
+    *,
+    size: float,
+    starts: int,
+    axial_module: float,
+    teeth: int,
+    pitch_diameter: float,
+    pressure_angle: float,
+    ball: float,
+) -> GapOverBalls:
+    """Arc of the gap at the wheel's reference circle from the size over two balls: `over_balls` turned round, exact.
+
+    The size is the height of a ball's centre, r_c = (M - D)/2 (over cos(90 deg/z) if odd). The rack point where a ball at that
+    height in the mid-plane touches does not depend on the gap, which is then twice what the flank is short of the ball there.
+    d s2/dM = -1/(2 d r_c/d(-s2)), see `_Gap.rise`.
+    An eccentric ring changes nothing, even or odd: two balls and a micrometer know no axis. Of a ring that is out of round,
+    or whose gaps are unlike, this is the mean of two gaps only.
+    Validity: as `over_balls`.
+    Raises: ValueError for sizes not above zero, or a size that no gap of this pitch gives.
+    Source: derived here; round trip and derivative in tests/unit/worm/test_over_balls.py.
+
+    >>> found = gap_over_balls(size=105.65404, starts=1, axial_module=2.5, teeth=40, pitch_diameter=30.0,
+    ...                        pressure_angle=math.radians(20.0), ball=4.2)
+    >>> round(found.gap, 4), round(found.per_size, 3), round(found.contact_diameter, 2)
+    (3.927, -0.4, 99.95)
+    """
+    above_zero(
+        size=size, starts=starts, axial_module=axial_module, teeth=teeth, pitch_diameter=pitch_diameter, ball=ball
+    )
+    steep_enough(pressure_angle=pressure_angle)
+    at = _Gap(
+        p=starts * axial_module / 2.0,
+        wheel_radius=teeth * axial_module / 2.0,
+        worm_radius=pitch_diameter / 2.0,
+        slope=math.tan(pressure_angle),
+        half=0.0,
+    )
+    centre = (size - ball) / 2.0 / _opposite(teeth)
+
+    def high_enough(y: float, z: float) -> tuple[float, float]:
+        _, radius, height = at.centre(y, z, ball / 2.0)
+        return radius - centre, height
+
+    pitch = math.pi * axial_module
+    found = at.seat(high_enough, axial_module)
+    gap = -2.0 * at.wheel_radius * at.centre(*found, ball / 2.0)[0] if found is not None else 0.0
+    rise = at.rise(*found, ball / 2.0) if found is not None else 0.0
+    if found is None or not 0.0 < gap < pitch or not rise > 0.0:
+        raise ValueError(f"{size:g} mm over balls of {ball:g} mm fits no gap of {pitch:g} mm pitch")
+    return GapOverBalls(gap, -1.0 / (2.0 * _opposite(teeth) * rise), 2.0 * _touched(at, *found))
 
 
 def _touched(at: _Gap, y: float, z: float) -> float:

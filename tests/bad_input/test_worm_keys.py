@@ -9,6 +9,7 @@ from setupcheck.shipped import shipped
 from tests.bad_input.ring import refused, spoilt
 
 WHEEL = shipped("jobs/rotator-worm-wheel.yaml").read_text("utf-8")
+MESH = "mesh: {wheel: wheel.teeth,"
 MODULE = "  axial_module: 1.5\n"
 THICKNESS = "  thread_thickness: {measured: 2.310 mm, uncertainty: 4 um}\n"
 
@@ -83,6 +84,59 @@ def says(old: str, new: str) -> list[str]:
             "worm.lead | this size has neither a nominal nor a measured value. Write a size, or measured: 32.04 mm",
         ),
         (
+            MESH,
+            f"{MESH} over_balls: 111.266,",
+            "mesh.over_balls | a size over balls counts only as measured, for what is planned follows from insert and depth. "
+            "Write it as in {measured: 124.964, ball: 3.50, uncertainty: 8 um}",
+        ),
+        (
+            MESH,
+            f"{MESH} over_balls: {{nominal: 111.266, ball: 2.5}},",
+            "mesh.over_balls | a size over balls counts only as measured, for what is planned follows from insert and depth. "
+            "Write it as in {measured: 124.964, ball: 3.50, uncertainty: 8 um}",
+        ),
+        (
+            MESH,
+            f"{MESH} over_balls: {{measured: 111.266, uncertainty: 8 um}},",
+            "mesh.over_balls | a size over balls needs the diameter of a ball. "
+            "Write it as in {measured: 124.964, ball: 3.50, uncertainty: 8 um}",
+        ),
+        (
+            MESH,
+            f"{MESH} ball: 2.4, over_balls: {{measured: 111.266, ball: 2.5, uncertainty: 8 um}},",
+            "mesh.over_balls.ball | measured over balls of 2.5 mm, and mesh.ball is 2.4 mm. "
+            "Write the ball once, the one that was measured with",
+        ),
+        (
+            MESH,
+            f"{MESH} over_balls: {{measured: 111.266, ball: 0, uncertainty: 8 um}},",
+            "mesh.over_balls.ball | 0 is not a size. Write a length above zero",
+        ),
+        (
+            MESH,
+            f"{MESH} over_balls: {{measured: 111.266, ball: 2.5, uncertainty: 8}},",
+            "mesh.over_balls.uncertainty | 8 has no unit, so it is not a length. "
+            "An error entry needs its unit: write 8 um, or 8 mm if that is meant",
+        ),
+        (
+            MESH,
+            f"{MESH} over_balls: {{measured: 55.633, ball: 2.5, uncertainty: 8 um}},",
+            "mesh.over_balls.measured | 55.633 mm over balls of 2.5 mm does not fit teeth on a circle of 108 mm. "
+            "Write the size over both balls, and the diameter of one",
+        ),
+        (
+            MESH,
+            f"{MESH} over_balls: {{measured: 111.266, ball: 25, uncertainty: 8 um}},",
+            "mesh.over_balls.measured | 111.266 mm over balls of 25 mm does not fit teeth on a circle of 108 mm. "
+            "Write the size over both balls, and the diameter of one",
+        ),
+        (
+            MESH,
+            f"{MESH} over_balls: {{measured: 111.266, ball: 2.5, uncertainty: 8 um, at_temperature: 30 degC}},",
+            "mesh.over_balls.at_temperature | only the diameter of a surface is brought back to 20 degC. "
+            "Correct this size by hand, and drop it",
+        ),
+        (
             MODULE,
             "  axial_modul: 1.5\n",
             "worm.axial_modul | 'axial_modul' is not a key of this entry. Did you mean axial_module?",
@@ -99,6 +153,9 @@ def test_a_key_that_cannot_be_meant_is_refused_at_its_place(old: str, new: str, 
         (THICKNESS, "  thread_thickness: {measured: 1.946 mm, at: 25, uncertainty: 4 um}\n"),
         (THICKNESS, "  over_wires: {nominal: 27.42, lower: -0.02 mm, upper: 0 mm, wire: 2.55}\n"),
         (MODULE, "  axial_pitch: 4.712 ±0.002\n"),
+        (MESH, f"{MESH} over_balls: {{measured: 111.266, ball: 2.5, uncertainty: 8 um}},"),
+        (MESH, f"{MESH} ball: 2.5, over_balls: {{measured: 111.266}},"),
+        (MESH, f"{MESH} ball: 2.5, over_balls: {{measured: 111.266, ball: 2.50 mm}},"),
         (MODULE, "  lead: 3/16 in\n"),
     ],
 )

@@ -30,6 +30,7 @@ READ = {
     "tip_diameter pressure_angle over_wires end_float",
     "Thickness": "nominal lower upper fit measured uncertainty at_temperature at",
     "OverWires": "nominal lower upper fit measured uncertainty at_temperature wire",
+    "OverBalls": "nominal lower upper fit measured uncertainty at_temperature ball",
     "Mesh": "wheel centre_distance shift ball",
     "Mark": "seen_from right left on_teeth film",
     "Spot": "at towards height share",

@@ -8,7 +8,7 @@ import pytest
 from scipy.optimize import brentq, minimize
 
 from setupcheck.worm.geometry import contact_reach
-from setupcheck.worm.over_balls import OverBalls, best_ball, over_balls
+from setupcheck.worm.over_balls import GapOverBalls, OverBalls, best_ball, gap_over_balls, over_balls
 
 from .exact_gap import Pair
 
@@ -122,3 +122,56 @@ def test_the_reach_along_the_worm_is_that_of_an_earlier_program(
     )
     assert reach <= found + 0.05
     assert reach == pytest.approx(found, rel=0.02)
+
+
+def inverse(p: Pair, ball: float, size: float) -> GapOverBalls:
+    return gap_over_balls(
+        size=size,
+        starts=p.starts,
+        axial_module=p.module,
+        teeth=p.teeth,
+        pitch_diameter=2.0 * (p.a - p.r2),
+        pressure_angle=p.pressure_angle,
+        ball=ball,
+    )
+
+
+ODD = Pair(1, 2.5, 30.0, 41, ALPHA, 60.0, 0.0)
+
+
+@pytest.mark.parametrize("p", [*PAIRS, ODD])
+@pytest.mark.parametrize("share", [0.9, 1.0, 1.15])
+@pytest.mark.parametrize("wider", [-0.10, 0.0, 0.05, 0.20])
+def test_a_size_over_balls_gives_back_the_gap_it_came_from(p: Pair, share: float, wider: float) -> None:
+    ball, gap = round(share * best(p), 2), gap_of(p) + wider
+    there = ours(p, ball, gap)
+    back = inverse(p, ball, there.size)
+    assert gap == pytest.approx(back.gap, abs=1e-9)
+    assert there.contact_diameter == pytest.approx(back.contact_diameter, abs=1e-7)
+
+
+@pytest.mark.parametrize("p", [*PAIRS, ODD])
+@pytest.mark.parametrize("share", [0.9, 1.15])
+def test_the_derivative_of_the_gap_is_that_of_a_small_step(p: Pair, share: float) -> None:
+    ball = round(share * best(p), 2)
+    size, step = ours(p, ball).size, 1e-3
+    moved = (inverse(p, ball, size + step).gap - inverse(p, ball, size - step).gap) / (2.0 * step)
+    assert moved == pytest.approx(inverse(p, ball, size).per_size, rel=1e-6)
+    assert moved < 0.0  # a wider gap lets the ball sink
+
+
+def test_the_gap_found_by_a_search_on_the_exact_flank_is_given_back() -> None:
+    p = PAIRS[0]
+    assert gap_of(p) == pytest.approx(inverse(p, 4.2, searched(p, 4.2)).gap, abs=1e-6)
+
+
+@pytest.mark.parametrize("size", [5.0, 98.0, 114.0, 150.0])
+def test_a_size_that_no_gap_gives_is_refused_with_both_sizes(size: float) -> None:
+    with pytest.raises(ValueError, match=rf"^{size:g} mm over balls of 4\.2 mm fits no gap of 7\.85398 mm pitch$"):
+        inverse(PAIRS[0], 4.2, size)
+
+
+@pytest.mark.parametrize("key", ["size", "ball"])
+def test_a_size_of_nothing_is_refused(key: str) -> None:
+    with pytest.raises(ValueError, match=key):
+        inverse(PAIRS[0], **({"ball": 4.2, "size": 105.6} | {key: 0.0}))
