@@ -9,7 +9,9 @@ from dataclasses import fields, replace
 from setupcheck.jobfile.models import Deviation
 from setupcheck.ledger.account import Account
 from setupcheck.ledger.causes import TRUNCATION, TRUNCATION_2D, Cause
-from setupcheck.ledger.figures import Figure, Push, alternatives
+from setupcheck.ledger.figures import Figure, Push, Tooth, alternatives
+from setupcheck.ledger.route import Pattern
+from setupcheck.ledger.running import AsItRuns
 from setupcheck.quantities.book import Scope
 from setupcheck.quantities.causes import kept_key
 from setupcheck.quantities.judged import Result
@@ -293,3 +295,24 @@ def with_cause(figure: Figure, old: Cause, new: Cause) -> Figure:
 
     changed = {f.name: other(getattr(figure, f.name)) for f in fields(figure)}  # type: ignore[arg-type]
     return replace(figure, **changed)  # type: ignore[type-var]
+
+
+def scaled(figure: Figure, cause: Cause, factor: float) -> Figure:
+    """The figure with one cause so many times as large, also where it sits in the division of teeth or holes."""
+    new, figure = cause.scaled(factor), with_cause(figure, cause, cause.scaled(factor))
+    if isinstance(figure, AsItRuns):
+        ring = scaled(figure.ring, cause, factor)
+        assert isinstance(ring, Tooth)
+        return replace(figure, ring=ring)
+    pattern = getattr(figure, "pattern", None)
+    if not isinstance(pattern, Pattern):
+        return figure
+    divided = replace(
+        pattern,
+        periodic=tuple(replace(p, cause=new) if p.cause == cause else p for p in pattern.periodic),
+        scatter=tuple(
+            replace(s, cause=new, bound=s.bound * factor) if s.cause == cause else s for s in pattern.scatter
+        ),
+        drift=tuple(new if c == cause else c for c in pattern.drift),
+    )
+    return replace(figure, pattern=divided)  # type: ignore[type-var]

@@ -11,9 +11,7 @@ from setupcheck.jobfile.models import Deviation, Dimension
 from setupcheck.jobfile.reading import LoadedJob
 from setupcheck.jobfile.setups import Setup
 from setupcheck.ledger.causes import Cause
-from setupcheck.ledger.figures import Figure, MidPlane, OverATurn, Tooth, real_pushes
-from setupcheck.ledger.route import Pattern
-from setupcheck.ledger.running import AsItRuns
+from setupcheck.ledger.figures import Figure, MidPlane, OverATurn, real_pushes
 from setupcheck.quantities.book import Open
 from setupcheck.quantities.cut_again import CutAgain, cut_again
 from setupcheck.quantities.drive import Drive, WheelCut, drive, middle, wheel_cut
@@ -25,6 +23,7 @@ from setupcheck.quantities.gates import (
     reading_for,
     room,
     rounded_down,
+    scaled,
     span,
     with_cause,
     worst_excess,
@@ -299,7 +298,7 @@ def _recorded(result: Result) -> tuple[tuple[Change, ...], Figure]:
     def at(factor: float) -> Figure:
         one = figure
         for cause, _ in each:
-            one = _scaled(one, cause, factor)
+            one = scaled(one, cause, factor)
         return one
 
     inside, outside = 1.0 / RECORD_BETTER, 1.0
@@ -311,27 +310,6 @@ def _recorded(result: Result) -> tuple[tuple[Change, ...], Figure]:
         for cause, row in each
     )
     return changes, at(inside)
-
-
-def _scaled(figure: Figure, cause: Cause, factor: float) -> Figure:
-    """The figure with one cause so many times as large, also where it sits in the division of teeth or holes."""
-    new, figure = cause.scaled(factor), with_cause(figure, cause, cause.scaled(factor))
-    if isinstance(figure, AsItRuns):
-        ring = _scaled(figure.ring, cause, factor)
-        assert isinstance(ring, Tooth)
-        return replace(figure, ring=ring)
-    pattern = getattr(figure, "pattern", None)
-    if not isinstance(pattern, Pattern):
-        return figure
-    divided = replace(
-        pattern,
-        periodic=tuple(replace(p, cause=new) if p.cause == cause else p for p in pattern.periodic),
-        scatter=tuple(
-            replace(s, cause=new, bound=s.bound * factor) if s.cause == cause else s for s in pattern.scatter
-        ),
-        drift=tuple(new if c == cause else c for c in pattern.drift),
-    )
-    return replace(figure, pattern=divided)  # type: ignore[type-var]
 
 
 def _cut_back(loaded: LoadedJob, result: Result, *, most: int, bought: bool = False) -> tuple[Change, ...]:
@@ -354,7 +332,7 @@ def _cut_back(loaded: LoadedJob, result: Result, *, most: int, bought: bool = Fa
                 return ()
             continue
         changes += _changes(loaded, cause, entries, LEAST_KEPT)
-        figure = _scaled(figure, cause, LEAST_KEPT)
+        figure = scaled(figure, cause, LEAST_KEPT)
     return ()
 
 
@@ -363,7 +341,7 @@ def _by_weight(figure: Figure) -> list[Cause]:
     full = worst_excess(figure, None, 0.0) if not figure.signed else worst_excess(figure, 0.0, 0.0)
 
     def weight(cause: Cause) -> float:
-        gone = _scaled(figure, cause, 0.0)
+        gone = scaled(figure, cause, 0.0)
         return full - (worst_excess(gone, None, 0.0) if not figure.signed else worst_excess(gone, 0.0, 0.0))
 
     return sorted(origins(reaches(figure)), key=weight, reverse=True)

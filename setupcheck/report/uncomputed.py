@@ -170,7 +170,9 @@ def _of_the_wheel(loaded: LoadedJob) -> Iterator[str]:
             yield "mesh.over_balls"
             yield from (f"cutters.{cut.cutter}.tip_radius", f"cutters.{cut.cutter}.insert")
             if job.mesh.contact is not None:
-                yield from (f"cutters.{cut.cutter}.{key}" for key in ("grinding", "profile", "turned", "width", "width_at"))
+                yield from (
+                    f"cutters.{cut.cutter}.{key}" for key in ("grinding", "profile", "turned", "width", "width_at")
+                )
             if cut.depth_from is not None:
                 touched = loaded.ref(cut.depth_from.surface, wheel.part)
                 yield f"parts.{touched.part}.surfaces.{touched.surface}.radius"
