@@ -7,8 +7,8 @@ FLANK = "rigid shift of an involute, derived here; checked against an exact invo
 PITCH = "pitch deviations as ISO 1328-1:1995 defines them; " + FLANK
 HOLES = "geometry, derived here"
 MARKS = (
-    "closed form: second-order theory of the plunged cutter, derived here; envelope insert, head at the lead angle; 3 to 15 % "
-    "low against simulation"
+    "closed form: second-order theory of the plunged cutter, derived here; envelope insert, head at the lead angle; within 15 % "
+    "of simulation where the ends of the face stay clear, far too high for a smaller cutter"
 )
 MAP = "exact gap, derived here: thread of the worm against the flank as the insert cuts it, run rigidly over one pitch"
 

@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+import re
+
 import pytest
 
 from setupcheck.flow import Review, review
@@ -11,7 +13,7 @@ from setupcheck.report.text import as_text
 from setupcheck.report.working import as_working
 from setupcheck.shipped import shipped
 
-from .worm_jobs import NINETY
+from .worm_jobs import NINETY, TWO_STARTS
 
 SPINDLE = shipped("jobs/wheel-on-spindle.yaml").read_text(encoding="utf-8")
 CLOSED = {"TILT-004", "TILT-005", "CUTTER-009"}
@@ -161,3 +163,21 @@ def test_the_report_tells_one_share_of_blue_and_not_two() -> None:
     assert "6 um of blue marks 14.1 % of a flank" in " ".join(
         as_text(judged((", contact: exact, error_budget: 10 um", ""))).split()
     )
+
+
+@pytest.mark.parametrize(
+    ("job", "radius", "smaller"), [(SPINDLE, 31.0, 28.0), (TWO_STARTS, 40.0, 33.0), (NINETY, 18.5, 15.0)]
+)
+def test_the_closed_share_is_that_of_the_map_only_where_the_ends_stay_clear(
+    job: str, radius: float, smaller: float
+) -> None:
+    def both(at: float) -> tuple[float, float]:
+        text = job.replace(f"tip_radius: {radius}", f"tip_radius: {at}")
+        closed = re.sub(r", contact: exact, error_budget: \d+ um", "", text)
+        return number(judged(text=closed), "cutter.contact"), number(judged(text=text), "contact.share")
+
+    for at in (radius, 1.3 * radius):
+        closed, exact = both(at)
+        assert closed == pytest.approx(exact, rel=0.15)
+    closed, exact = both(smaller)
+    assert closed > 1.15 * exact
