@@ -144,6 +144,11 @@ def share(maps: Maps) -> float:
     return min(c.share for c in maps.both)
 
 
+def along_face(maps: Maps) -> float:
+    """Share of the face's width over which a flank is marked at any height, the smaller of both flanks. Source: worm.meshing."""
+    return min(c.along_face for c in maps.both)
+
+
 def ends(maps: Maps) -> float:
     """Share of both end columns of the face that is marked, the larger of both flanks. Source: worm.meshing."""
     return max(c.ends for c in maps.both)
@@ -278,6 +283,7 @@ CONTACT: tuple[Quantity, ...] = (
     row("drill", "", 0, drill, _PAIR, "worm, wheel, clearance and film the contact is worked out for"),
     row("maps", "", 0, maps, SET, "contact of both flanks as planned"),
     row("share", "%", 1, share, _MAPS, "share of a flank that is marked"),
+    row("along_face", "%", 1, along_face, _MAPS, "share of the face's width that is marked"),
     row("ends", "%", 2, ends, _MAPS, "share of the ends of the face that is marked"),
     row("error", "um", 1, error, _MAPS, "transmission error of the cut as planned, along the reference circle"),
     row("error_angle", "arcsec", 1, error_angle, _MAPS, "transmission error of the cut as planned, at the wheel"),

@@ -126,7 +126,8 @@ def relief(shape: Shape, half_face: float) -> float:
 def contact_area(shape: Shape, half_face: float, film: float) -> float | None:
     """Share of a flank that a marking film touches: 2 w/b, w = sqrt(f/(A cos alpha cos g)); None without crowning.
 
-    Envelope insert, head at the lead angle, no load; 3 to 15 % low against simulation.  Source: worm.cutter.
+    Envelope insert, head at the lead angle, no load; within 15 % of simulation where the ends of the face stay clear, far too
+    high for a smaller cutter.  Source: worm.cutter.
     """
     if shape.crowning <= 0.0:
         return None
@@ -153,9 +154,12 @@ def contact_length(shape: Shape, half_face: float, film: float) -> float | None:
     return min(run / (2.0 * half_face) + area, 1.0)
 
 
-def usual_contact(shape: Shape, half_face: float) -> float | None:
-    """`contact_area` for a film of 6 um. Source: worm.cutter; film common practice."""
-    return contact_area(shape, half_face, USUAL_FILM)
+def usual_contact(shape: Shape, half_face: float, exact: float | None) -> float | None:
+    """Share of a flank that a film of 6 um marks, closed form: 2 w/b, w = sqrt(f/(A cos alpha cos g)).
+
+    None where the exact gap gives that share.  Source: worm.cutter; film common practice.
+    """
+    return contact_area(shape, half_face, USUAL_FILM) if exact is None else None
 
 
 def clearance(cut: WheelCut) -> float:
@@ -173,11 +177,14 @@ def insert(cut: WheelCut) -> str | Open:
     return cut.cutter.insert if cut.cutter.insert is not None else Open((f"{cut.cutter_path}.insert",))
 
 
-def insert_gap(shape: Shape, insert: str) -> float | None:
+def insert_gap(shape: Shape, insert: str, error: float | None, budget: float | None) -> float | None:
     """What an insert copied from the mid-plane is too narrow by one module from pitch height, each side [mm].
 
-    (B m)^2/(4 A) cos g; 0 for an envelope; None without crowning.  Source: worm.insert, order of size.
+    (B m)^2/(4 A) cos g; 0 for an envelope; None without crowning, and where the exact gap gives the transmission error that
+    the insert leaves beside its budget, which CUTTER-012 judges.  Source: worm.insert, order of size.
     """
+    if error is not None and budget is not None:
+        return None
     if insert == "envelope":
         return 0.0
     if shape.crowning <= 0.0:
@@ -301,8 +308,9 @@ _SHAPE = {"shape": "cutter.shape"}
 _FACE = {**_SHAPE, "half_face": "cutter.half_face"}
 
 
-def _row(name: str, unit: str, digits: int, of: object, inputs: dict[str, str], says: str) -> Quantity:
-    return Quantity(f"cutter.{name}", "cut", unit, digits, of, inputs, says)  # type: ignore[arg-type]
+def _row(name: str, unit: str, digits: int, of: object, inputs: dict[str, str], says: str, *exact: str) -> Quantity:
+    """A row of a cut; exact: arguments that are None where the exact gap is not asked for or gives no number."""
+    return Quantity(f"cutter.{name}", "cut", unit, digits, of, inputs, says, dict.fromkeys(exact))  # type: ignore[arg-type]
 
 
 SHAPE = (
@@ -313,11 +321,33 @@ SHAPE = (
     _row("half_face", "mm", 2, half_face, _SHAPE, "half the width of the teeth"),
     _row("ridge_reach", "mm", 2, ridge_reach, _SHAPE, "reach of the contact ridge along the face"),
     _row("relief", "um", 0, relief, _FACE, "metal missing at the ends of the face"),
-    _row("contact", "%", 1, usual_contact, _FACE, "share of a flank that 6 um of blue marks"),
+    _row(
+        "contact",
+        "%",
+        1,
+        usual_contact,
+        {**_FACE, "exact": "settled contact.share"},
+        "share of a flank that 6 um of blue marks",
+        "exact",
+    ),
     _row("clearance", "mm", 3, clearance, _CUT, "clearance under the worm's tip for the depth as planned"),
     _row("module", "mm", 3, module, _CUT, "axial module"),
     _row("insert", "", 0, insert, _CUT, "profile of the insert"),
-    _row("insert_gap", "um", 1, insert_gap, {**_SHAPE, "insert": "cutter.insert"}, "what the insert is too narrow by"),
+    _row(
+        "insert_gap",
+        "um",
+        1,
+        insert_gap,
+        {
+            **_SHAPE,
+            "insert": "cutter.insert",
+            "error": "settled contact.error",
+            "budget": "settled contact.budget",
+        },
+        "what the insert is too narrow by",
+        "error",
+        "budget",
+    ),
     _row("width_needed", "mm", 4, width_needed, _HERE, "insert at pitch height for the thread, no backlash"),
     _row("width", "mm", 4, width_at_pitch, _CUT, "smallest width of the insert at pitch height"),
     _row("tip_width", "mm", 4, tip_width, _HERE, "insert at its tip for the thread, no backlash"),

@@ -59,17 +59,22 @@ def _wobble(floor: Floor) -> float | Open:
     return Open(missing) if missing else lean.largest()
 
 
-def ridge_shift(shape: Shape, worst: float) -> float | None:
-    """How far the marking moves along the face for the worst error of the tilt [mm]: d tau/(2 A). Source: worm.cutter."""
-    return worst / (2.0 * shape.crowning) if shape.crowning > 0.0 else None
+def ridge_shift(shape: Shape, worst: float, exact: float | None) -> float | None:
+    """How far the ridge of contact moves along the face for the worst error of the tilt [mm]: d tau/(2 A), closed form.
 
-
-def profile_error(shape: Shape, worst: float) -> float | None:
-    """What the worst error of the tilt does to the profile over two modules of height [mm]: 2 m d tau B/(2 A).
-
-    Within a factor of two of the simulated transmission error.  Source: worm.cutter.
+    The middle of a marking moves several times as far. None where the exact gap gives what the tilt may be off, which TILT-009
+    judges.  Source: worm.cutter.
     """
-    if shape.crowning <= 0.0:
+    return worst / (2.0 * shape.crowning) if exact is None and shape.crowning > 0.0 else None
+
+
+def profile_error(shape: Shape, worst: float, exact: float | None) -> float | None:
+    """What the worst error of the tilt does to the profile over two modules of height [mm]: 2 m d tau B/(2 A), closed form.
+
+    None where the exact gap gives what the tilt may be off, which TILT-009 judges. Within a factor of two of the simulated
+    transmission error.  Source: worm.cutter.
+    """
+    if exact is not None or shape.crowning <= 0.0:
         return None
     return 2.0 * shape.cut.drive.module * profile_error_of_tilt(worst, crowning=shape.crowning, twist=shape.twist)
 
@@ -140,7 +145,8 @@ def bar_miss(setup: Setup) -> float | Open | None:
 
 
 _SETUP = {"setup": ":"}
-_CUT = {"shape": "cutter.shape", "worst": "tilt.worst_error"}
+_CUT = {"shape": "cutter.shape", "worst": "tilt.worst_error", "exact": "settled contact.tilt"}
+_CLOSED: dict[str, object] = {"exact": None}
 
 HEAD = (
     Quantity(
@@ -152,8 +158,17 @@ HEAD = (
         {"floor": "route.floor", "set_angle": "tilt.set", "needed_angle": "tilt.needed", "allowed": "tilt.allowed"},
         "largest error of the angle between gaps and thread",
     ),
-    Quantity("tilt.ridge_shift", "cut", "mm", 2, ridge_shift, _CUT, "shift of the marking for the worst tilt"),
-    Quantity("tilt.profile_error", "cut", "um", 1, profile_error, _CUT, "profile error for the worst tilt"),
+    Quantity(
+        "tilt.ridge_shift",
+        "cut",
+        "mm",
+        2,
+        ridge_shift,
+        _CUT,
+        "shift of the ridge of contact for the worst tilt",
+        _CLOSED,
+    ),
+    Quantity("tilt.profile_error", "cut", "um", 1, profile_error, _CUT, "profile error for the worst tilt", _CLOSED),
     Quantity(
         "tilt.middle_found",
         "setup",

@@ -175,8 +175,20 @@ def drawn(profile: Insert) -> Drawn:
 
 
 def ground(asked: str, cut: WheelCut) -> Grinding | None:
-    """How the job says that the insert is ground; None where it says nothing. Source: the job file."""
-    return cut.cutter.grinding
+    """How the job says that the insert is ground; None where it says nothing of it. Source: the job file.
+
+    A form error alone plans no grinding: a measured insert is held against it.
+    """
+    told = cut.cutter.grinding
+    return None if told is None or told.model_fields_set == {"form_error"} else told
+
+
+def form_error(asked: str, cut: WheelCut) -> float | Open | None:
+    """Form error that a flank may have, square to it [mm]. Source: the job file."""
+    told = cut.cutter.grinding
+    if told is None:
+        return None
+    return told.form_error if told.form_error is not None else Open((f"{cut.cutter_path}.grinding.form_error",))
 
 
 def _stated(key: str, says: str) -> object:
@@ -192,7 +204,6 @@ def _stated(key: str, says: str) -> object:
 
 wheel_radius = _stated("wheel_radius", "Radius of the grinding wheel's edge [mm].")
 step = _stated("step", "Step of the grinder's readings [mm].")
-form_error = _stated("form_error", "Form error that a flank may have, square to it [mm].")
 stop_error = _stated("stop_error", "How far the stop may be out of square, either way [rad].")
 way = _stated("way", "How the second flank is come by.")
 shank_side = _stated("shank_side", "Side of the shank that is touched, from its middle line [mm].")
@@ -388,7 +399,7 @@ INSERTS = (
     _row("ground", "", 0, ground, {"asked": "contact.asked", **_CUT}, "how the insert is ground"),
     _row("wheel_radius", "mm", 2, wheel_radius, _GROUND, "edge radius of the grinding wheel"),
     _row("step", "um", 1, step, _GROUND, "step of the grinder's readings"),
-    _row("form_error", "um", 1, form_error, _GROUND, "form error that a flank may have"),
+    _row("form_error", "um", 1, form_error, {"asked": "contact.asked", **_CUT}, "form error that a flank may have"),
     _row("stop_error", "arcmin", 1, stop_error, _GROUND, "how far the stop may be out of square"),
     _row("way", "", 0, way, _GROUND, "how the second flank is come by"),
     _row("shank_side", "mm", 3, shank_side, _GROUND, "side of the shank that is touched"),

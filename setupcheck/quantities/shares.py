@@ -1,4 +1,4 @@
-"""What a joint carries and what a flank marks, as figures that a requirement can limit. N mm, shares of one."""
+"""What a joint carries, as a figure that a requirement can limit. N mm."""
 
 from __future__ import annotations
 
@@ -8,9 +8,8 @@ from setupcheck.jobfile.setups import Join
 from setupcheck.ledger import figures
 from setupcheck.ledger.account import Account
 from setupcheck.ledger.causes import Cause, Mode
-from setupcheck.quantities import cutter_shape, pairing, strength
+from setupcheck.quantities import pairing, strength
 from setupcheck.quantities.book import Open, OutOfRange
-from setupcheck.quantities.drive import Drive, WheelCut, drive, wheel_cut
 from setupcheck.quantities.friction import Friction
 from setupcheck.quantities.joining import JointSizes, limits_of, sizes
 from setupcheck.quantities.relations import Built
@@ -80,33 +79,3 @@ def _size(floor: Floor, ref: Ref) -> Account:
         f"{ref.surface} of {ref.part}, within its limits", "length", high=(high - low) / 2.0, mode=mode, paths=(path,)
     )
     return Account.of(cause).plus_constant((low + high) / 2.0)
-
-
-def contact(floor: Floor, stack: Stack) -> Built | Open:
-    """Share of the flank (contact-area) or of the face (contact-length) that a stated film marks.
-
-    Source: quantities.cutter_shape, closed form.
-    """
-    if stack.require.film is None:
-        return Open((f"require[{stack.index + 1}].film",))
-    found = drive(floor)
-    made = wheel_cut(floor, found) if isinstance(found, Drive) else found
-    if isinstance(made, Open):
-        return made
-    if not isinstance(made, WheelCut):
-        return Open(because="contact is computed for a worm wheel cut by a single point")
-    try:
-        shape = cutter_shape.shape(made)
-        insert = cutter_shape.insert(made)
-        half = cutter_shape.half_face(shape)
-        if isinstance(insert, Open) or isinstance(half, Open):
-            return insert if isinstance(insert, Open) else half if isinstance(half, Open) else Open()
-        if insert != "envelope":
-            return Open(because="contact is computed for an insert that follows the envelope")
-        of = cutter_shape.contact_area if stack.require.what == "contact-area" else cutter_shape.contact_length
-        share = of(shape, half, stack.require.film)
-    except (OutOfRange, ValueError) as why:
-        return Open(because=str(why))
-    if share is None:
-        return Open(because="the cutter leaves no crowning, so the ends of the teeth ride")
-    return Built(figures.Length(Account().plus_constant(share)), 0.0)

@@ -12,11 +12,12 @@ from setupcheck.ledger.route import State
 from setupcheck.quantities.backlash import backlash
 from setupcheck.quantities.book import Open
 from setupcheck.quantities.causes import BARE
+from setupcheck.quantities.contact_share import contact
 from setupcheck.quantities.mid_plane import mid_plane
 from setupcheck.quantities.relations import Built, pair, second_order, state
 from setupcheck.quantities.requirements import Stack
 from setupcheck.quantities.running import as_it_runs
-from setupcheck.quantities.shares import contact, torque
+from setupcheck.quantities.shares import torque
 from setupcheck.quantities.shop import Floor
 from setupcheck.quantities.worm_sizes import settled
 

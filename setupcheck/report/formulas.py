@@ -6,7 +6,11 @@ DIAL = "geometry of the dial indicator, derived here"
 FLANK = "rigid shift of an involute, derived here; checked against an exact involute in the tests"
 PITCH = "pitch deviations as ISO 1328-1:1995 defines them; " + FLANK
 HOLES = "geometry, derived here"
-MARKS = "second-order theory of the plunged cutter, derived here; 3 to 15 % low against simulation"
+MARKS = (
+    "closed form: second-order theory of the plunged cutter, derived here; envelope insert, head at the lead angle; within 15 % "
+    "of simulation where the ends of the face stay clear, far too high for a smaller cutter"
+)
+MAP = "exact gap, derived here: thread of the worm against the flank as the insert cuts it, run rigidly over one pitch"
 
 FORMULAS: dict[str, tuple[str, str]] = {
     "run-out": (
@@ -100,6 +104,20 @@ FORMULAS: dict[str, tuple[str, str]] = {
 }
 """what -> (formula in words, its source). e is the distance of the two axes; FIM the full movement of the dial."""
 
+FROM_THE_EXACT_GAP: dict[str, tuple[str, str]] = {
+    "contact-length": (
+        "share of the face's width over which the film is thicker than the distance from flank to thread, at any height and any "
+        "travel, head as set, insert as planned or measured; the smaller of both flanks",
+        MAP,
+    ),
+    "contact-area": (
+        "share of the flank's area in which the film is thicker than the distance from flank to thread at any travel, head as "
+        "set, insert as planned or measured; the smaller of both flanks",
+        MAP,
+    ),
+}
+"""The same figures where the job asks for the exact gap (`mesh: {contact: exact}`)."""
+
 OF_A_STACK: dict[str, tuple[str, str]] = {
     "stack.worst": (
         "worst case: high spots of known direction added as vectors, then every other error at its bound straight on top",
@@ -120,3 +138,12 @@ OF_A_STACK: dict[str, tuple[str, str]] = {
     "stack.chance": ("share of the drawn jobs that meet the limits", "drawing every cause, JCGM 101:2008"),
 }
 """How a stack's numbers are made of what each cause gives."""
+
+
+def formula_of(what: str, *, exact: bool) -> tuple[str, str]:
+    """Formula and source of a figure; exact: the job asks for the exact gap.
+
+    >>> formula_of("contact-area", exact=True)[1].startswith("exact gap"), formula_of("run-out", exact=True)[1] == DIAL
+    (True, True)
+    """
+    return FROM_THE_EXACT_GAP.get(what, FORMULAS[what]) if exact else FORMULAS[what]

@@ -17,10 +17,14 @@ STACK_RULES = ("STACK-001", "STACK-002")
 """Rules whose remedy is worked out from the stack itself."""
 
 ELSE = "No one or two entries close it. Better work on the biggest causes, or ask for less."
+MARK_MORE = (
+    "Grind the insert to the envelope, set the head to the lead angle, and take the smallest cutter circle that keeps the ends "
+    "of the face clear (cutters, tip_radius), since a larger one marks less; or ask for less."
+)
 INSTEAD = {
     "backlash": "No one or two entries close it. Measure insert, thread and centre distance closer, or ask for less.",
-    "contact-area": "Take a larger cutter circle (cutters, tip_radius), or ask for less.",
-    "contact-length": "Take a larger cutter circle (cutters, tip_radius), or ask for less.",
+    "contact-area": MARK_MORE,
+    "contact-length": MARK_MORE,
     "torque": "Take more interference, a longer seat or better friction, add a key or pins, or ask for less.",
 }
 """What is left of requirements that no holding changes."""

@@ -17,7 +17,7 @@ from setupcheck.quantities.relations import Built
 from setupcheck.quantities.scopes import stack_of
 from setupcheck.report.asked import find
 from setupcheck.report.causes import cause_in_words
-from setupcheck.report.formulas import FORMULAS, OF_A_STACK
+from setupcheck.report.formulas import FORMULAS, OF_A_STACK, formula_of
 from setupcheck.report.wording import WIDTH, clean, finer, title_of, wrap
 from setupcheck.report.written import written
 
@@ -156,7 +156,9 @@ def _made_of(loaded: LoadedJob, book: Book, scope: Scope) -> Iterator[str]:
         if isinstance(result, Known) and isinstance(result.value, Result):
             c = result.value.combined
             yield f"  {stack.require.what}:"
-            yield from _formula(FORMULAS[stack.require.what], "    ")
+            mesh = loaded.job.mesh
+            exact = mesh is not None and mesh.contact is not None
+            yield from _formula(formula_of(stack.require.what, exact=exact), "    ")
             yield from _causes(loaded, book, c.shares, c.base, stack.unit)
     elif scope.kind == "cut":
         built, draws = book.get("allow.built", scope), book.get("route.draws", scope)

@@ -185,7 +185,7 @@ REFUSED = {
     "undercut": ("spindle", "pressure_angle: 20 deg", "pressure_angle: 10 deg", "the wheel is undercut", "MESH-004"),
     "too wide": ("spindle", "width: 20}", "width: 40}", "a face of 40 mm is as wide as the worm's tip diameter", "MESH-008"),
     "smaller than the worm": ("ninety", "tip_radius: 18.5", "tip_radius: 12.0", "is smaller than the worm's tip", "CUTTER-003"),
-    "pointed thread": ("spindle", "pressure_angle: 20 deg", "pressure_angle: 40 deg", "the thread is pointed", "STACK-002"),
+    "pointed thread": ("spindle", "pressure_angle: 20 deg", "pressure_angle: 40 deg", "the thread is pointed", "STACK-001"),
     "no clearance": ("two starts", "depth: 6.6", "depth: 5.9", "lets the worm's tip run on the bottom", "CUTTER-005"),
 }  # fmt: skip
 

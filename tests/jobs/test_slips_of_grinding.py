@@ -8,6 +8,7 @@ import pytest
 
 from setupcheck.flow import Review, review
 from setupcheck.jobfile.reading import read_job_text
+from setupcheck.report.insert import inserts, readings
 from setupcheck.report.text import as_text
 from setupcheck.report.uncomputed import uncomputed
 from setupcheck.shipped import shipped
@@ -106,6 +107,31 @@ def test_an_entry_left_out_is_open_and_named(key: str) -> None:
         "form_error": {"INSERT-004", "INSERT-005"},
     }.get(key, {"INSERT-002", "INSERT-003", "INSERT-005"})
     assert wanted == rules
+
+
+@pytest.mark.parametrize("route", ROUTES)
+def test_a_form_error_alone_is_no_plan_of_grinding(route: str) -> None:
+    found = judged(route, "{form_error: 5 um}")
+    assert not [f.rule for f in found.evaluation.findings if f.rule.startswith("INSERT")]
+    assert [*readings(found)] == []
+    assert "laid over a drawing the form error shows from" in " ".join(inserts(found))
+
+
+@pytest.mark.parametrize(
+    "more", ["wheel_radius: 5 mm", "step: 1 um", "stop_error: 1'", "way: swung", "shank_side: 6 mm"]
+)
+def test_anything_beside_a_form_error_asks_for_the_rest(more: str) -> None:
+    found = judged("rotator-worm-wheel", f"{{form_error: 5 um, {more}}}")
+    told = {f.rule: f.verdict for f in found.evaluation.findings if f.rule.startswith("INSERT")}
+    known = {"wheel_radius": "INSERT-001", "step": "INSERT-004"}.get(more.partition(":")[0], "")
+    assert told == {f"INSERT-00{n}": "pass" if known.endswith(str(n)) else "open" for n in range(1, 6)}
+    assert "cannot tell, fill cutters.fly.grinding." in " ".join(readings(found))
+
+
+def test_an_empty_way_of_grinding_is_open() -> None:
+    assert {f"INSERT-00{n}": "open" for n in range(1, 6)} == {
+        rule: verdict for rule, (verdict, _) in spoken(judged("rotator-worm-wheel", "{}")).items()
+    }
 
 
 def test_a_width_without_limits_is_open_and_a_measured_one_is_not_judged_again() -> None:
