@@ -261,7 +261,7 @@ class Tooth:
     def _sides(self) -> tuple[int, ...]:
         return (1, -1) if self.flank and self.pattern.pressure_angle else (0,)
 
-    def _wave(self, side: int) -> Account:
+    def wave(self, side: int) -> Account:
         """Vector F of one flank (0: gap centre): its arcs are Im(F exp(-i theta_j)) before division."""
         own = self.offset * teeth.flank_turn(self.pattern, side=side, driven=self.driven)
         if self.oblique == Account():
@@ -269,7 +269,7 @@ class Tooth:
         return own + self.oblique * teeth.oblique_turn(self.pattern, side=side, driven=self.driven)
 
     def _worse(self) -> Account:
-        return max((self._wave(side) for side in self._sides()), key=Account.largest)
+        return max((self.wave(side) for side in self._sides()), key=Account.largest)
 
     def base(self) -> float:
         gain = teeth.gains(self.pattern, stepwise=self.stepwise, flank=False)
@@ -314,7 +314,7 @@ class Tooth:
 
     def _over_the_turn(self, draws: Draws) -> Reals:
         """Range or largest step of the worse flank for all trials [mm]; figures of one ring share it."""
-        waves = [self._wave(side) for side in self._sides()]
+        waves = [self.wave(side) for side in self._sides()]
         terms = frozenset((i, c.identity, a, b) for i, w in enumerate(waves) for c, (a, b) in w.terms.items())
         key = (self.stepwise, id(self.pattern), tuple(w.constant for w in waves), terms)
         found = draws.memo.get(key)

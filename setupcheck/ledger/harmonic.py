@@ -15,6 +15,7 @@ from setupcheck.ledger.account import Account
 from setupcheck.ledger.causes import Cause
 from setupcheck.ledger.combine import Draws
 from setupcheck.ledger.figures import Tooth
+from setupcheck.ledger.route import Scatter
 from setupcheck.ledger.teeth import angles, folded
 from setupcheck.record import record
 
@@ -24,20 +25,22 @@ Complexes = NDArray[np.complexfloating]
 
 @record(eq=False)
 class Part:
-    """What one cause adds to a wave: its middle [mm] and its covariance (2, 2) [mm^2]; x along the part's mark."""
+    """What one cause adds to a wave: its middle [mm], covariance (2, 2) [mm^2], and as drawn (trials,); x along the mark."""
 
     cause: Cause
     middle: complex
     covariance: Reals
+    drawn: Complexes
 
 
 @record(eq=False)
 class Wave:
-    """A planned wave: `known` part without any cause (rounding of settings), and what each cause adds."""
+    """A planned wave: `known` part without any cause (rounding of settings), what each cause adds, and all of it as drawn."""
 
     harmonic: int
     known: complex
     parts: tuple[Part, ...]
+    drawn: Complexes
 
     @property
     def middle(self) -> complex:
@@ -55,40 +58,39 @@ def planned_wave(figure: Tooth, harmonic: int, draws: Draws, *, side: int = 1) -
     pattern = figure.pattern
     if not 1 <= harmonic < pattern.count / 2.0:
         raise ValueError(f"{pattern.count} places cannot tell a wave of {harmonic} round the wheel")
-    parts: list[Part] = []
-    if harmonic == 1:
-        flank = side if figure.flank and pattern.pressure_angle else 0
-        account = figure._wave(flank) * -1j
-        parts += [_of(cause, draws.account(Account(0j, {cause: ab}))) for cause, ab in account.terms.items()]
+    account = figure.wave(side if figure.flank and pattern.pressure_angle else 0) * -1j if harmonic == 1 else Account()
+    parts = [_of(cause, draws.account(Account(0j, {cause: ab}))) for cause, ab in account.terms.items()]
     for periodic in pattern.periodic:
         if folded(periodic.harmonic, pattern.count) == harmonic:
             parts.append(_of(periodic.cause, pattern.radius * draws.cause(periodic.cause)))
-    ramp = _wave_of(
-        np.arange(pattern.count) / max(pattern.count - 1, 1), pattern.radius * pattern.turn, figure, harmonic
-    )
+    scale = pattern.radius * pattern.turn
+    ramp = _wave_of(np.arange(pattern.count) / max(pattern.count - 1, 1), scale, figure, harmonic)
     parts += [_of(cause, ramp * draws.cause(cause)) for cause in pattern.drift]
-    for scatter in pattern.scatter:
-        arc = scatter.bound * _lever(figure, scatter.along)
-        if arc > 0.0:
-            parts.append(Part(scatter.cause, 0j, np.eye(2) * (arc**2 / 3.0 * 2.0 / pattern.count)))
-    known = 0j
+    parts += [_of(s.cause, _scattered(s, figure, draws)) for s in pattern.scatter if _arc(s, figure) > 0.0]
+    known = account.constant
     if pattern.rounding:
-        known = _wave_of(np.asarray(pattern.rounding), pattern.radius * pattern.turn, figure, harmonic)
-    if harmonic == 1:
-        known += account.constant
-    return Wave(harmonic, known, tuple(p for p in parts if abs(p.middle) > 0.0 or p.covariance.any()))
+        known += _wave_of(np.asarray(pattern.rounding), scale, figure, harmonic)
+    total = sum((part.drawn for part in parts), np.full(draws.trials, known))
+    return Wave(harmonic, known, tuple(p for p in parts if p.middle or p.covariance.any()), total)
 
 
-def _lever(figure: Tooth, along: str) -> float:
-    """What a scatter of one place does to its arc [mm for each rad or mm]."""
+def _arc(scatter: Scatter, figure: Tooth) -> float:
+    """Bound of the arc of one place [mm]; a gap cut deeper moves each flank by r tan(alpha)."""
     deeper = math.tan(figure.pattern.pressure_angle or 0.0) if figure.flank else 0.0
-    return {"angle": figure.pattern.radius, "tangential": 1.0, "radial": deeper}[along]
+    return scatter.bound * {"angle": figure.pattern.radius, "tangential": 1.0, "radial": deeper}[scatter.along]
+
+
+def _scattered(scatter: Scatter, figure: Tooth, draws: Draws) -> Complexes:
+    """The wave in errors that each place draws for itself: 2 s^2/N on either axis, s the arc's standard deviation."""
+    spread = _arc(scatter, figure) / math.sqrt(3.0) * math.sqrt(2.0 / figure.pattern.count)
+    both = draws.stream(f"wave of {scatter.cause.identity}").standard_normal((2, draws.trials))
+    return np.asarray(spread * (both[0] + 1j * both[1]))
 
 
 def _of(cause: Cause, drawn: Reals | Complexes) -> Part:
     values = np.asarray(drawn, dtype=np.complex128)
     both = np.stack([values.real, values.imag])
-    return Part(cause, complex(values.mean()), np.cov(both))
+    return Part(cause, complex(values.mean()), np.cov(both), values)
 
 
 def _wave_of(shape: Reals, scale: float, figure: Tooth, harmonic: int) -> complex:
