@@ -65,7 +65,7 @@ def settings(count: int, per_turn: Fraction | int, order: Sequence[int] = ()) ->
     found, at = [], 0
     for number, place in enumerate((*places, count + 1)):
         steps = to_whole((place - 1) * up, low * count)
-        moved = 0 if number == 0 else (steps - at) % whole_turn or (whole_turn if place > count else 0)
+        moved = 0 if number == 0 else whole_turn if count == 1 else (steps - at) % whole_turn
         angle = Fraction(steps * low, up)
         found.append(Setting(1 if place > count else place, steps, moved, angle, angle - Fraction(place - 1, count)))
         at = steps
@@ -192,32 +192,6 @@ def exact_share(angle: float) -> Fraction:
         if plain and abs(float(plain) - turns) <= 1e-12 * turns:
             return plain
     return Fraction(turns)
-
-
-def fixed_of(share: Fraction, whole: int, digits: int) -> str:
-    """A share of a turn in a unit of which `whole` make a turn, rounded exactly to so many decimals.
-
-    >>> fixed_of(Fraction(1, 40), 360, 6), fixed_of(Fraction(1, 40), 400, 5), fixed_of(Fraction(-1, 3), 360, 1)
-    ('9.000000', '10.00000', '-120.0')
-    """
-    scale = 10**digits
-    steps = to_whole(abs(share.numerator) * whole * scale, share.denominator)
-    text = str(steps) if not digits else f"{steps // scale}.{steps % scale:0{digits}d}"
-    return f"-{text}" if share < 0 and steps else text
-
-
-def sexagesimal(share: Fraction, digits: int = 1) -> tuple[str, str, str]:
-    """Degrees, minutes and seconds of a share of a turn (0 or more), rounded exactly; 60 seconds never appear.
-
-    >>> sexagesimal(Fraction(1, 7))
-    ('51', '25', '42.9')
-    """
-    scale = 10**digits
-    ticks = to_whole(share.numerator * ARCSEC * scale, share.denominator)
-    degrees, rest = divmod(ticks, 3600 * scale)
-    minutes, rest = divmod(rest, 60 * scale)
-    seconds = f"{rest // scale:02d}.{rest % scale:0{digits}d}" if digits else f"{rest:02d}"
-    return str(degrees), f"{minutes:02d}", seconds
 
 
 def sine_setting(share: Fraction, bar: float, step: float) -> tuple[int, Fraction, float, float]:

@@ -14,6 +14,7 @@ from setupcheck.jobfile.setups import Divide, Setup
 from setupcheck.ledger.route import Pattern
 from setupcheck.ledger.teeth import folded
 from setupcheck.notation import show
+from setupcheck.notation.shares import fixed_of
 from setupcheck.quantities import division
 from setupcheck.quantities.book import Open, Quantity
 from setupcheck.quantities.requirements import read_stack
@@ -40,6 +41,7 @@ class IndexTable:
     per_turn  smallest steps of the device in a turn of the work, None where it shows any angle (no step is stated)
     radius    of the places [mm];  start  direction of place 1 seen from the end that points away from the spindle [rad]
     away      that end of the part, `+z` or `-z`;  bar  centre distance of the sine bar's rolls [mm]
+    linear_step  of a readout for coordinates [mm], where it is stated
     """
 
     kind: str
@@ -57,6 +59,7 @@ class IndexTable:
     start: float
     away: str
     bar: float | None
+    linear_step: float | None
     lines: tuple[Setting, ...]
 
     def told(self) -> str:
@@ -96,6 +99,9 @@ def index_table(floor: Floor, setup: Setup, count: int, worm_ratio: int | None) 
         return missing if isinstance(missing, Open) else Open((f"setups.{setup.op}.machine",))
     if kind == "holes" and divide.circle is None:
         return Open((f"setups.{setup.op}.divide.circle",))
+    bar = getattr(divide, "sine_bar", None) if kind == "sine-bar" else None
+    if kind == "sine-bar" and bar is None:
+        return Open((f"setups.{setup.op}.divide.sine_bar",))
     circles, own = head_circles(floor, setup)
     per_turn = _per_turn(divide, kind, worm_ratio)
     order = divide.order or "in-turn"
@@ -115,7 +121,8 @@ def index_table(floor: Floor, setup: Setup, count: int, worm_ratio: int | None) 
         pattern.radius,
         pattern.turn * pattern.start,
         "+z" if own_sense > 0 else "-z",
-        setup.head.sine_bar if setup.head is not None else None,
+        bar,
+        divide.step if kind == "x-y" else None,
         tables.settings(count, per_turn if per_turn is not None else count, _places(count, order)),
     )
 
@@ -160,20 +167,21 @@ def head_circles(floor: Floor, setup: Setup) -> tuple[tuple[int, ...], bool]:
 
 def table_step(table: IndexTable) -> str:
     """From place to place in words, as it is done by hand. Source: exact fractions."""
+    spread = ", cut in spread order" if table.order == "spread" else ""
     if table.kind != "holes":
-        step = tables.fixed_of(Fraction(1, table.count), 360, 4)
-        return f"{table.count} places, {step} deg each"
+        return f"{table.count} places, {fixed_of(Fraction(1, table.count), 360, 4)} deg from one to the next{spread}"
     assert table.worm_ratio is not None
     assert table.circle is not None
     turns = turns_per_place(table.worm_ratio, table.count)
-    step = tables.step_on(table.worm_ratio, table.count, table.circle)
-    if step is None:
-        return f"{in_turns(turns)} is no whole number of holes on {table.circle}, so each place takes its nearest hole"
-    whole, holes = step
+    by_hand = tables.step_on(table.worm_ratio, table.count, table.circle)
+    if by_hand is None:
+        return f"{in_turns(turns)} is no whole number of holes on {table.circle}, so each place takes its nearest hole{spread}"
+    whole, holes = by_hand
     if not holes:
-        return f"{in_turns(turns)}, back into the same hole"
+        return f"{in_turns(turns)}, back into the same hole{spread}"
     also = f"{in_turns(Fraction(whole))} and " if whole else ""
-    return f"{in_turns(turns)} = {also}{holes} holes of {table.circle} ({holes + 1} in the sector arms)"
+    arms = spread or f" ({holes + 1} in the sector arms)"
+    return f"{in_turns(turns)} = {also}{holes} holes of {table.circle}{arms}"
 
 
 def in_turns(turns: Fraction) -> str:
