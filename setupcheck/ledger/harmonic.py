@@ -51,7 +51,7 @@ def planned_wave(figure: Tooth, harmonic: int, draws: Draws, *, side: int = 1) -
     """The wave of `harmonic` of one flank, as the worm that drives it sees it where the figure is `driven`.
 
     side  +1 counter-clockwise flank, -1 the other; 0 the middle of the gap (holes)
-    Amplitudes are arcs on the pattern radius. What a hand adds anew at every place leaves 2 s^2/N on each axis of every wave.
+    Amplitudes are arcs on the pattern radius.
     Raises: ValueError for a harmonic that this many places cannot tell (below 1, or N/2 and above).
     Source: eccentricity and lean as in ledger.teeth; discrete Fourier sum over N places (textbook).
     """
@@ -64,27 +64,32 @@ def planned_wave(figure: Tooth, harmonic: int, draws: Draws, *, side: int = 1) -
         if folded(periodic.harmonic, pattern.count) == harmonic:
             parts.append(_of(periodic.cause, pattern.radius * draws.cause(periodic.cause)))
     scale = pattern.radius * pattern.turn
-    ramp = _wave_of(np.arange(pattern.count) / max(pattern.count - 1, 1), scale, figure, harmonic)
-    parts += [_of(cause, ramp * draws.cause(cause)) for cause in pattern.drift]
-    parts += [_of(s.cause, _scattered(s, figure, draws)) for s in pattern.scatter if _arc(s, figure) > 0.0]
+    parts += [
+        _of(one.cause, _wave_of(np.asarray(one.shape), scale, figure, harmonic) * draws.cause(one.cause))
+        for one in pattern.shaped
+    ]
+    parts += [_of(s.cause, _scattered(s, figure, harmonic, draws, side)) for s in pattern.scatter]
     known = account.constant
     if pattern.rounding:
         known += _wave_of(np.asarray(pattern.rounding), scale, figure, harmonic)
+    if pattern.outwards:
+        known += _wave_of(np.asarray(pattern.outwards), side * _deeper(figure), figure, harmonic)
     total = sum((part.drawn for part in parts), np.full(draws.trials, known))
     return Wave(harmonic, known, tuple(p for p in parts if p.middle or p.covariance.any()), total)
 
 
-def _arc(scatter: Scatter, figure: Tooth) -> float:
-    """Bound of the arc of one place [mm]; a gap cut deeper moves each flank by r tan(alpha)."""
-    deeper = math.tan(figure.pattern.pressure_angle or 0.0) if figure.flank else 0.0
-    return scatter.bound * {"angle": figure.pattern.radius, "tangential": 1.0, "radial": deeper}[scatter.along]
+def _deeper(figure: Tooth) -> float:
+    """What an error outwards moves a flank by, over itself: tan(alpha)."""
+    return math.tan(figure.pattern.pressure_angle or 0.0) if figure.flank else 0.0
 
 
-def _scattered(scatter: Scatter, figure: Tooth, draws: Draws) -> Complexes:
-    """The wave in errors that each place draws for itself: 2 s^2/N on either axis, s the arc's standard deviation."""
-    spread = _arc(scatter, figure) / math.sqrt(3.0) * math.sqrt(2.0 / figure.pattern.count)
-    both = draws.stream(f"wave of {scatter.cause.identity}").standard_normal((2, draws.trials))
-    return np.asarray(spread * (both[0] + 1j * both[1]))
+def _scattered(scatter: Scatter, figure: Tooth, harmonic: int, draws: Draws, side: int) -> Complexes:
+    """The wave in errors that each place draws for itself, drawn place by place."""
+    pattern = figure.pattern
+    arcs = draws.scatter(scatter, pattern) * pattern.turn if scatter.goes_round else np.zeros((1, pattern.count))
+    if scatter.goes_outward and _deeper(figure):
+        arcs = arcs + side * _deeper(figure) * draws.scatter(scatter, pattern, outward=True)
+    return np.asarray(arcs @ _basis(figure, harmonic))
 
 
 def _of(cause: Cause, drawn: Reals | Complexes) -> Part:
@@ -94,9 +99,13 @@ def _of(cause: Cause, drawn: Reals | Complexes) -> Part:
 
 
 def _wave_of(shape: Reals, scale: float, figure: Tooth, harmonic: int) -> complex:
-    """The wave in a known error of each place: 2/N sum of arcs exp(i k theta)."""
-    turned = np.exp(1j * harmonic * angles(figure.pattern))
-    return complex(2.0 / len(shape) * scale * (shape * turned).sum())
+    """The wave in a known error of each place."""
+    return complex(scale * (shape @ _basis(figure, harmonic)))
+
+
+def _basis(figure: Tooth, harmonic: int) -> Complexes:
+    """2/N exp(i k theta_j) of every place, shape (count,)."""
+    return np.asarray(2.0 / figure.pattern.count * np.exp(1j * harmonic * angles(figure.pattern)))
 
 
 def towards(wave: complex, harmonic: int) -> float:

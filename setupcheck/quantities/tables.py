@@ -18,6 +18,7 @@ from setupcheck.quantities.exact_gap import EXACT
 from setupcheck.quantities.growing import GROWING
 from setupcheck.quantities.head_setting import HEAD
 from setupcheck.quantities.heat_checks import HEAT_CHECKS
+from setupcheck.quantities.index_table import INDEX_TABLE
 from setupcheck.quantities.insert_measured import MEASURED
 from setupcheck.quantities.inserts import INSERTS
 from setupcheck.quantities.joining import JOINING
@@ -268,6 +269,7 @@ TABLES: tuple[Quantity, ...] = (
     *ALLOW,
     *DIVIDE,
     *WAYS,
+    *INDEX_TABLE,
     *TILT,
     *HEAD,
     *JOINING,

@@ -17,6 +17,7 @@ SENTENCES: Sequence[tuple[str, str, str]] = (
     ("setup", "head", "gauge blocks {tilt.blocks}"),
     ("setup", "head", "tilting carries the wheel's middle {tilt.shift_height} up or down and {tilt.shift_length} back"),
     ("setup", "head", "{tilt.picture}"),
+    ("setup", "index", "{divide.table_step}; index table: setupcheck index JOB"),
     ("cut", "cutter", "tip radius {cutter.radius}, the worm needs more than {cutter.smallest_radius}"),
     ("cut", "cutter", "6 um of blue marks {cutter.contact} of a flank"),
     ("cut", "cutter", "clearance under the worm's tip {cutter.clearance}"),

@@ -9,8 +9,9 @@ import re
 from pathlib import Path
 
 from setupcheck.errors import JobError
-from setupcheck.flow import review
+from setupcheck.flow import load_job, prepare, review
 from setupcheck.jobfile.reading import read_job_text
+from setupcheck.report.index_table import as_index_table
 from setupcheck.report.text import as_text
 
 ROOT = Path(__file__).resolve().parents[2]
@@ -41,7 +42,14 @@ def reports() -> dict[str, str]:
     """File name -> text of every golden report."""
     found = {f"{job.stem}.txt": as_text(review(job)) for job in sorted((ROOT / "jobs").glob("*.yaml"))}
     found["shimmed-jaws.txt"] = as_text(review(read_job_text(SHIMMED, "shimmed-jaws.yaml")))
+    found["index-table.txt"] = index_table()
     return found
+
+
+def index_table() -> str:
+    """The index table of the worm wheel's teeth."""
+    loaded = load_job(ROOT / "jobs" / "rotator-worm-wheel.yaml")
+    return as_index_table(loaded, prepare(loaded)[1])
 
 
 def mistakes() -> str:
@@ -78,6 +86,7 @@ def excerpts() -> dict[str, str]:
     after = next(i for i in range(first + 1, len(shimmed)) if re.match(r"  \w+  [A-Z]+-\d|$", shimmed[i]))
     good = reports()["rotator-worm-wheel.txt"].splitlines()
     drawn = reports()["wheel-on-spindle.txt"].splitlines()
+    table = reports()["index-table.txt"].splitlines()
     asked = good.index("WHAT WAS ASKED, at its worst")
     dial = next(i for i, line in enumerate(good) if line.startswith("  op 40, run-out on hub: up to"))
     return {
@@ -86,6 +95,7 @@ def excerpts() -> dict[str, str]:
         "joint": "\n".join(good[first_of("JOINT", good) : good.index("WORKED OUT") - 1]),
         "contact": "\n".join(drawn[first_of("CONTACT", drawn) : drawn.index("WORKED OUT") - 1]),
         "worked": "\n".join(good[good.index("WORKED OUT") : good.index("", good.index("WORKED OUT"))]),
+        "index": "\n".join([*table[2:26], "  …", *table[-5:]]),
         "slips": slips(),
         "mistakes": mistakes(),
     }

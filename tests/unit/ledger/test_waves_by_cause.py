@@ -12,7 +12,7 @@ from setupcheck.ledger.causes import Cause
 from setupcheck.ledger.combine import Draws
 from setupcheck.ledger.figures import Tooth
 from setupcheck.ledger.harmonic import planned_wave, towards
-from setupcheck.ledger.route import Pattern, Periodic, Scatter
+from setupcheck.ledger.route import Pattern, Periodic, Scatter, Shaped
 
 N, R, ALPHA = 39, 50.0, math.radians(20.0)
 TRIALS = 20_000
@@ -34,7 +34,7 @@ def ring(turn: int, rounding: tuple[float, ...] = ()) -> Pattern:
             Scatter(Cause("setting", "length", high=5.0 * SECOND), "angle", 5.0 * SECOND),
             Scatter(Cause("depth of a gap", "length", high=0.004), "radial", 0.004),
         ),
-        drift=(Cause("drift", "length", high=8.0 * SECOND),),
+        shaped=(Shaped(Cause("drift", "length", high=8.0 * SECOND), tuple(j / (N - 1) for j in range(N))),),
         rounding=rounding,
     )
 
