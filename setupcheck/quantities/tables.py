@@ -31,6 +31,7 @@ from setupcheck.quantities.placing import PLACE
 from setupcheck.quantities.pressing import PRESSING
 from setupcheck.quantities.stated import STATED
 from setupcheck.quantities.strength import STRENGTH
+from setupcheck.quantities.then_now import THEN_NOW
 from setupcheck.quantities.thread import THREAD
 from setupcheck.quantities.through import THROUGH
 from setupcheck.quantities.tilting import TILT
@@ -298,4 +299,5 @@ TABLES: tuple[Quantity, ...] = (
     *ADVICE,
     *CLAMP,
     *MEASURE,
+    *THEN_NOW,
 )

@@ -16,6 +16,7 @@ from setupcheck.report.heating_plan import heating_plans
 from setupcheck.report.insert import inserts
 from setupcheck.report.joint import joints
 from setupcheck.report.remedies import remedy_in_words
+from setupcheck.report.then_now import then_now
 from setupcheck.report.uncomputed import in_lines, uncomputed
 from setupcheck.report.wording import as_stated, clean, finer, in_unit, on_the_dial, title_of, unit_of, wrap
 from setupcheck.report.worked_out import worked_out
@@ -39,6 +40,7 @@ def as_text(found: Review, *, everything: bool = False) -> str:
         _stops(found),
         _findings(found, everything),
         _requirements(found, everything),
+        then_now(found, everything),
         joints(found),
         heating_plans(found),
         contacts(found),
