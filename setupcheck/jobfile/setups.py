@@ -378,7 +378,7 @@ class Setup(Shop):
 
 
 class Job(Shop):
-    """The whole job file."""
+    """The whole job file. `done`: the last operation that is finished, as the job goes on."""
 
     setupcheck: Version
     title: str = Field(min_length=1)
@@ -393,6 +393,7 @@ class Job(Shop):
     cutters: dict[str, Cutter] = Field(default_factory=dict)
     machines: dict[str, Machine] = Field(default_factory=dict)
     setups: tuple[Setup, ...] = ()
+    done: Whole | None = None
     place: Place | None = None
     require: tuple[Require, ...] = ()
     waive: tuple[Waive, ...] = ()

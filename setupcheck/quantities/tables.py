@@ -29,6 +29,7 @@ from setupcheck.quantities.meshing import MESHING
 from setupcheck.quantities.opening import OPENING
 from setupcheck.quantities.placing import PLACE
 from setupcheck.quantities.pressing import PRESSING
+from setupcheck.quantities.progress import PROGRESS
 from setupcheck.quantities.stated import STATED
 from setupcheck.quantities.strength import STRENGTH
 from setupcheck.quantities.then_now import THEN_NOW
@@ -300,4 +301,5 @@ TABLES: tuple[Quantity, ...] = (
     *CLAMP,
     *MEASURE,
     *THEN_NOW,
+    *PROGRESS,
 )

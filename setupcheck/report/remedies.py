@@ -6,6 +6,7 @@ from typing import TYPE_CHECKING
 
 from setupcheck.flow import Review
 from setupcheck.notation import show
+from setupcheck.quantities.finished import finished
 from setupcheck.report.causes import cause_in_parts
 from setupcheck.report.wording import finer, on_the_dial
 from setupcheck.rulebook import Finding
@@ -17,6 +18,9 @@ STACK_RULES = ("STACK-001", "STACK-002")
 """Rules whose remedy is worked out from the stack itself."""
 
 ELSE = "No one or two entries close it. Better work on the biggest causes, or ask for less."
+ELSE_DONE = "No entry of a setup still to come closes it. See what can still be moved, or measure closer what is done."
+MEASURING = "MEASURE"
+"""Rules whose remedy is another reading, which a setup that is done still allows."""
 INSTEAD = {
     "backlash": "No one or two entries close it. Measure insert, thread and centre distance closer, or ask for less.",
     "contact-area": "Take a larger cutter circle (cutters, tip_radius), or ask for less.",
@@ -33,6 +37,8 @@ def remedy_in_words(found: Review, finding: Finding) -> str:
     if finding.rule in STACK_RULES and finding.key in found.remedies:
         told = _worked_out(found.remedies[finding.key], inches=found.book.inches)
         return told or _last_resort(found, finding)
+    if finding.op in finished(found.loaded.job) and not finding.rule.startswith(MEASURING):
+        return f"Op {finding.op} is done, so only its like can be made so next time: {finding.remedy}"
     return finding.remedy
 
 
@@ -41,6 +47,8 @@ def _last_resort(found: Review, finding: Finding) -> str:
     result = found.results.get(finding.key)
     if result is None:
         return finding.remedy
+    if found.loaded.job.done is not None:
+        return ELSE_DONE
     instead = INSTEAD.get(result.stack.require.what)
     if instead is not None:
         return instead

@@ -64,7 +64,7 @@ READ = {
     "Join": "outer inner by square fit_error clearance rests stop mounted_at",
     "Setup": "op note machine part looks_at_tool keeps hold head divide cut join",
     "Job": "setupcheck title job revision units room confidence parts worm mesh cutters machines setups place require "
-    "waive checked",
+    "waive checked done",
 }
 """Entries that some figure, rule, caution or check reads, that only name things, or that are told by their own line
 (size classes and limits, slot widths, the room, everything inside `heat`, `mark` and `depth_from`)."""
