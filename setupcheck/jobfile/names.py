@@ -218,6 +218,8 @@ def _setup_misses(
         for i, gone in enumerate(list_of(map_of(cut).get("removes"))):
             yield from _surface(gone, (*at, "cut", name, "removes", i), surfaces, own)
         yield from _surface(map_of(cut).get("from_surface"), (*at, "cut", name, "from_surface"), surfaces, own)
+        about = map_of(map_of(cut).get("prove_out")).get("about")
+        yield from _surface(about, (*at, "cut", name, "prove_out", "about"), surfaces, own)
         depth = map_of(cut).get("depth_from")
         touched = depth.get("surface") if isinstance(depth, dict) else depth
         yield from _surface(touched, (*at, "cut", name, "depth_from"), surfaces, own)

@@ -19,6 +19,7 @@ from setupcheck.jobfile.models import (
     RunOut,
     Waive,
 )
+from setupcheck.jobfile.prove_out import ProveOut
 from setupcheck.jobfile.service import JointService
 from setupcheck.jobfile.types import (
     Angle,
@@ -278,6 +279,7 @@ class Cut(Shop):
     spindle_to_axis    for a pattern on a rotary table: `x` is the pitch radius, `y` turns the pattern
     removes            surfaces that are gone afterwards
     from_surface       the surface it is cut out of, where it has no earlier state of its own
+    prove_out          shallow gaps cut first, and what the dial over a ball read in them
     """
 
     to: Length | None = None
@@ -295,6 +297,7 @@ class Cut(Shop):
     depth_error: Error | None = None
     depth_from: Annotated[Touched, BeforeValidator(lambda g: {"surface": g} if isinstance(g, str) else g)] | None = None
     passes: tuple[Size, ...] = ()
+    prove_out: ProveOut | None = None
     each: Scatter | None = None
     spindle_to_axis: dict[Literal["x", "y"], Dim] | None = None
     tool_change_after: Whole | None = Field(default=None, ge=1)

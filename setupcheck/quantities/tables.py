@@ -27,9 +27,11 @@ from setupcheck.quantities.marking import MARK
 from setupcheck.quantities.measuring import MEASURE
 from setupcheck.quantities.meshing import MESHING
 from setupcheck.quantities.opening import OPENING
+from setupcheck.quantities.opposite import OPPOSITE
 from setupcheck.quantities.placing import PLACE
 from setupcheck.quantities.pressing import PRESSING
 from setupcheck.quantities.progress import PROGRESS
+from setupcheck.quantities.prove_out import PROVE
 from setupcheck.quantities.stated import STATED
 from setupcheck.quantities.strength import STRENGTH
 from setupcheck.quantities.then_now import THEN_NOW
@@ -302,4 +304,6 @@ TABLES: tuple[Quantity, ...] = (
     *MEASURE,
     *THEN_NOW,
     *PROGRESS,
+    *PROVE,
+    *OPPOSITE,
 )

@@ -17,6 +17,7 @@ from setupcheck.report.heating_plan import heating_plans
 from setupcheck.report.insert import inserts
 from setupcheck.report.joint import joints
 from setupcheck.report.progress import still_to_move
+from setupcheck.report.prove_out import prove_outs
 from setupcheck.report.remedies import remedy_in_words
 from setupcheck.report.then_now import then_now
 from setupcheck.report.uncomputed import in_lines, uncomputed
@@ -44,6 +45,7 @@ def as_text(found: Review, *, everything: bool = False) -> str:
         _requirements(found, everything),
         then_now(found, everything),
         still_to_move(found),
+        prove_outs(found),
         joints(found),
         heating_plans(found),
         contacts(found),

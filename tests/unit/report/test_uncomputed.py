@@ -8,7 +8,7 @@ import json
 import pytest
 from pydantic import BaseModel
 
-from setupcheck.jobfile import grinding, heating, insert_profile, marks, models, properties, setups, worm
+from setupcheck.jobfile import grinding, heating, insert_profile, marks, models, properties, prove_out, setups, worm
 from setupcheck.report.json import as_json
 from setupcheck.report.text import as_text
 from setupcheck.report.uncomputed import NOT_LOOKED_AT, in_lines, uncomputed
@@ -59,7 +59,8 @@ READ = {
     "Scatter": "radial tangential by",
     "Touched": "surface measured uncertainty at_most tool",
     "Cut": "passes to state leave_on_diameter leave_on_radius leave error removes from_surface finishing_cut form cutter each "
-    "spindle_to_axis tool_change_after",
+    "spindle_to_axis tool_change_after prove_out",
+    "ProveOut": "depth ball about readings uncertainty",
     "Heat": "hub shaft by oven_error read_by carry cold_by cold_error gauge flash_point room_volume coolant",
     "Join": "outer inner by square fit_error clearance rests stop mounted_at",
     "Setup": "op note machine part looks_at_tool keeps hold head divide cut join",
@@ -71,7 +72,7 @@ READ = {
 
 RECORDS = {
     record.__name__: record  # not the name it is found under: some have a second one
-    for module in (grinding, insert_profile, models, properties, setups, heating, worm, marks)
+    for module in (grinding, insert_profile, models, properties, prove_out, setups, heating, worm, marks)
     for record in vars(module).values()
     if inspect.isclass(record)
     and issubclass(record, BaseModel)
