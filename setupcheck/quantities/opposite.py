@@ -83,14 +83,14 @@ def _worst(figure: Figure) -> float:
 def _best_angle(thirds: Mapping[float, Floor], stack: Stack) -> float | None:
     """Angle at which the known vectors of both parts stand against each other [rad]; None where none does anything.
 
-    base^2 = c + a cos(phi) + b sin(phi), from its values at three thirds of a turn.  Source: law of cosines.
+    known^2 = c + a cos(phi) + b sin(phi), from its values at three thirds of a turn.  Source: law of cosines.
     """
     wave, all_of_it = 0j, 0.0
     for angle, floor in thirds.items():
         figure = _figure(floor, stack)
         if figure is None:
             return None
-        square = max(one.base for one in reaches(figure)) ** 2
+        square = max(one.base + sum(p.known for p in one.pushes) for one in reaches(figure)) ** 2
         wave += square * cmath.exp(1j * angle)
         all_of_it += square
     if abs(wave) <= 1e-9 * all_of_it or all_of_it == 0.0:
@@ -197,8 +197,10 @@ def chain(entry: HoldEntry, path: str, results: tuple[Result, ...]) -> Chain | N
     lengths = [r for r in results if r.stack.unit == "um" and r.margin_share is not None]
     for result in sorted(lengths, key=lambda r: r.margin_share or 0.0):
         mine = next((p for p in result.figure.pushes() if where in p.cause.paths and p.cause.bound > 0.0), None)
-        if mine is not None and mine.up > 0.0:
-            scale = mine.up / mine.cause.bound / 2.0  # per mm of the dial, which shows twice the eccentricity
+        if mine is not None and mine.up > mine.known:
+            scale = (
+                (mine.up - mine.known) / mine.cause.bound / 2.0
+            )  # per mm of the dial, which shows twice the eccentricity
             return Chain(path, centre.on, (first, large), (second, small), result.stack, 2.0 * small * scale)
     return None
 

@@ -197,7 +197,7 @@ def allowed(floor: Floor, proof: Proof, off_axis: Account, results: tuple[Result
         ref = floor.loaded.ref(result.stack.of)
         if proof.teeth is None or (ref.part, ref.surface) != (proof.teeth.part, proof.teeth.name):
             continue
-        pushes = {p.cause: p.up for p in result.figure.pushes()}
+        pushes = {p.cause: p.up - p.known for p in result.figure.pushes()}
         shared = sum(off_axis.reach(c) * c.bound for c in off_axis.terms if pushes.get(c, 0.0) > 0.0)
         push = sum(pushes.get(c, 0.0) for c in off_axis.terms)
         if shared <= 0.0 or push <= 0.0:
@@ -245,8 +245,8 @@ def move(floor: Floor, proof: Proof, ring: fit.Ring, uncertainty: float, planned
     first = "Within the plan; to better it, move" if planned is not None and e + uncertainty <= planned else "Move"
     return (
         f"{first} the blank {floor.fine(e)} on {name or 'the machine'} in the direction of gap {_gap(gap, proof.count)}: a "
-        f"dial on {about} shows {floor.fine(2.0 * e)} there, high at gap {_gap(across, proof.count)}; bring it to nothing before the "
-        "finishing pass."
+        f"dial on {about} shows {floor.fine(2.0 * e)} there, high at gap {_gap(across, proof.count)}; bring it to nothing "
+        "before the finishing pass."
     )
 
 

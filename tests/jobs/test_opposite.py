@@ -76,7 +76,7 @@ def test_the_report_says_it_once_and_the_rule_warns() -> None:
     report = re.sub(r"\s+", " ", as_text(found))
     assert "op 70, mounting: Put wheel on spindle with its mark at" in report
     assert "run-out of hub in op 50 (high at 30 deg)" in report
-    assert "(high at 75.0 deg) against each other" in report
+    assert "run-out of journal (high at 75.0 deg)" in report
 
 
 def test_less_than_a_micrometre_is_not_worth_a_word() -> None:

@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+import cmath
+import math
 import re
 
 import pytest
@@ -9,7 +11,9 @@ import pytest
 from setupcheck.errors import JobError
 from setupcheck.flow import Review, review
 from setupcheck.jobfile.reading import read_job_text
+from setupcheck.ledger.account import Account
 from setupcheck.quantities.book import Known, Open
+from setupcheck.quantities.prove_out import Proof
 from setupcheck.report.text import as_text
 from tests.jobs.test_measuring import changed
 
@@ -153,3 +157,28 @@ def test_prove_out_gaps_that_cannot_be_are_refused(text: str, says: str) -> None
     with pytest.raises(JobError) as wrong:
         read_job_text(text, "job.yaml")
     assert re.search(says, str(wrong.value))
+
+
+@pytest.mark.parametrize("turned", [0, 90, 200])
+def test_the_move_undoes_the_run_out_that_the_ledger_cut_the_gaps_with(turned: int) -> None:
+    """A hold that is out by a known vector; the ring as the ledger has it is read exactly, and the dial found again."""
+    true = ("clearance: [2 um, 8 um], rests: pushed, runout: 3 um}", "clearance: [0 um, 0 um], rests: pushed, runout: "
+            f"{{measured: 12 um, uncertainty: 0 um, high_at: {turned} deg}}}}")  # fmt: skip
+    said = "depth: 0.8 mm, about: hub, uncertainty: 0.1 um, readings: "
+    found = judged(changed(true, (CUT, f"cut:    {{teeth: {{prove_out: {{{said}{{}}}}, cutter: fly,")))
+    scope = next(s for s in found.book.instances("cut") if s.key == "40/teeth")
+    proof, off = found.book.get("prove.out", scope), found.book.get("prove.off_axis", scope)
+    assert isinstance(proof, Known) and isinstance(proof.value, Proof) and proof.value.teeth is not None
+    assert isinstance(off, Known) and isinstance(off.value, Account)
+    pattern, centre = proof.value.teeth.pattern, off.value.known()
+    assert pattern is not None and abs(centre) == pytest.approx(0.006)
+    read = []
+    for gap in (1, 19, 37, 55):
+        stands = centre + pattern.radius * cmath.exp(1j * pattern.angle(gap))
+        read.append(f"gap {gap}: {1e3 * (abs(stands) - pattern.radius):.6f} um")
+    text = changed(true, (CUT, f"cut:    {{teeth: {{prove_out: {{{said}{{{', '.join(read)}}}}}, cutter: fly,"))
+    told = re.search(r"shows ([\d.]+) um there, high at gap (\d+)", block(text))
+    assert told is not None
+    assert float(told[1]) == pytest.approx(12.0, abs=0.05)
+    high = min(range(1, 73), key=lambda g: abs(cmath.phase(cmath.exp(1j * (pattern.angle(g) - math.radians(turned))))))
+    assert int(told[2]) == high
