@@ -30,7 +30,8 @@ def _block(found: Review, scope: Scope, entry: CutEntry) -> Iterator[str]:
     ball = f", over a ball of {show(given.ball, unit, digits)}" if given.ball is not None else ""
     about = f" as the part turns about {clean(given.about)}" if given.about is not None else ""
     gaps = filled(found, scope, "{prove.gaps}")
-    yield from _line(f"cut {show(given.depth, unit, digits)} deep: {gaps}; cutter stopped and clear, read a dial in each{ball}{about}")
+    deep = show(given.depth, unit, digits)
+    yield from _line(f"cut {deep} deep: {gaps}; cutter stopped and clear, read a dial in each{ball}{about}")
     for sentence in (
         "eccentric by {prove.eccentricity} ± {prove.uncertainty}, gap {prove.gap_out} stands farthest out",
         "that direction is known to ± {prove.direction_uncertainty}",
