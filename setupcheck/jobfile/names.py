@@ -148,6 +148,10 @@ def misses(data: Mapping[str, object]) -> Iterator[Miss]:
             yield Miss(
                 ("require", i, "of"), f"operation {map_of(wanted).get('of')} joins nothing. Write the op of the joining"
             )
+    done = data.get("done")
+    if isinstance(done, int) and not isinstance(done, bool) and done not in seen:
+        known = f"Write one of {', '.join(map(str, seen))}" if seen else "Leave it away until there is one"
+        yield Miss(("done",), f"there is no operation {done}. {known}")
     place = map_of(data.get("place"))
     yield from _surface(place.get("axis"), ("place", "axis"), surfaces, None)
     yield from _surface(map_of(place.get("worm_axis")).get("from"), ("place", "worm_axis", "from"), surfaces, None)
@@ -214,6 +218,8 @@ def _setup_misses(
         for i, gone in enumerate(list_of(map_of(cut).get("removes"))):
             yield from _surface(gone, (*at, "cut", name, "removes", i), surfaces, own)
         yield from _surface(map_of(cut).get("from_surface"), (*at, "cut", name, "from_surface"), surfaces, own)
+        about = map_of(map_of(cut).get("prove_out")).get("about")
+        yield from _surface(about, (*at, "cut", name, "prove_out", "about"), surfaces, own)
         depth = map_of(cut).get("depth_from")
         touched = depth.get("surface") if isinstance(depth, dict) else depth
         yield from _surface(touched, (*at, "cut", name, "depth_from"), surfaces, own)

@@ -23,6 +23,7 @@ from setupcheck.jobfile import (
     joints,
     marks,
     names,
+    proofs,
     reach,
     sense,
     shapes,
@@ -169,6 +170,7 @@ def _contradictions(data: Mapping[str, Data], job: Job | None) -> Iterator[names
         gauges.misplaced,
         gearing.unlikely,
         marks.unlikely,
+        proofs.unlikely,
         warmth.unlikely,
     ):
         yield from check(drawing)

@@ -20,6 +20,7 @@ from setupcheck.jobfile.models import (
     RunOut,
     Waive,
 )
+from setupcheck.jobfile.prove_out import ProveOut
 from setupcheck.jobfile.service import JointService
 from setupcheck.jobfile.types import (
     Angle,
@@ -245,6 +246,7 @@ class Cut(Shop):
     spindle_to_axis    for a pattern on a rotary table: `x` is the pitch radius, `y` turns the pattern
     removes            surfaces that are gone afterwards
     from_surface       the surface it is cut out of, where it has no earlier state of its own
+    prove_out          shallow gaps cut first, and what the dial over a ball read in them
     """
 
     to: Length | None = None
@@ -262,6 +264,7 @@ class Cut(Shop):
     depth_error: Error | None = None
     depth_from: Annotated[Touched, BeforeValidator(lambda g: {"surface": g} if isinstance(g, str) else g)] | None = None
     passes: tuple[Size, ...] = ()
+    prove_out: ProveOut | None = None
     each: Scatter | None = None
     spindle_to_axis: dict[Literal["x", "y"], Dim] | None = None
     tool_change_after: Whole | None = Field(default=None, ge=1)
@@ -345,7 +348,7 @@ class Setup(Shop):
 
 
 class Job(Shop):
-    """The whole job file."""
+    """The whole job file. `done`: the last operation that is finished, as the job goes on."""
 
     setupcheck: Version
     title: str = Field(min_length=1)
@@ -360,6 +363,7 @@ class Job(Shop):
     cutters: dict[str, Cutter] = Field(default_factory=dict)
     machines: dict[str, Machine] = Field(default_factory=dict)
     setups: tuple[Setup, ...] = ()
+    done: Whole | None = None
     place: Place | None = None
     require: tuple[Require, ...] = ()
     waive: tuple[Waive, ...] = ()

@@ -7,7 +7,6 @@ from collections.abc import Iterator, Mapping
 from dataclasses import replace
 
 from setupcheck.errors import JobError
-from setupcheck.jobfile.models import Deviation, Dimension
 from setupcheck.jobfile.reading import LoadedJob
 from setupcheck.jobfile.setups import Setup
 from setupcheck.ledger.causes import Cause
@@ -15,9 +14,10 @@ from setupcheck.ledger.figures import Figure, MidPlane, OverATurn, real_pushes
 from setupcheck.quantities.book import Open
 from setupcheck.quantities.cut_again import CutAgain, cut_again
 from setupcheck.quantities.drive import Drive, WheelCut, drive, middle, wheel_cut
+from setupcheck.quantities.entries import Stated, deviation, row_of, stated
+from setupcheck.quantities.finished import finished, op_of
 from setupcheck.quantities.gates import (
     FINE,
-    guard_of,
     origins,
     reaches,
     reading_for,
@@ -34,7 +34,6 @@ from setupcheck.quantities.requirements import read_stack
 from setupcheck.quantities.route import walk
 from setupcheck.quantities.shop import Floor
 from setupcheck.quantities.stacks import build
-from setupcheck.quantities.typical import Typical, table, typical
 from setupcheck.record import record
 
 LEAST_KEPT = 0.2
@@ -61,69 +60,6 @@ class Change:
     unit: str
     also: tuple[str, ...] = ()
     is_typical: bool = False
-
-
-@record
-class Stated:
-    """What an entry of the job file says: its value now, the guard its uncertainty adds, and the least it can be."""
-
-    now: float
-    unit: str
-    guard: float = 0.0
-    least: float = 0.0
-
-
-def _node(loaded: LoadedJob, path: str) -> object:
-    """What stands at a path of the typed job."""
-    node: object = loaded.job
-    for step in loaded.loc(path):
-        if isinstance(node, dict):
-            node = node.get(step)
-        elif isinstance(node, tuple) and isinstance(step, int):
-            node = node[step] if step < len(node) else None
-        else:
-            node = getattr(node, {"from": "low", "to": "high"}.get(str(step), str(step)), None)
-    return node
-
-
-def _deviation(loaded: LoadedJob, path: str) -> Deviation | None:
-    node = _node(loaded, path)
-    return node if isinstance(node, Deviation) else None
-
-
-def _row(cause: Cause) -> Typical | None:
-    """The typical value a cause was made with, if it was."""
-    return next((row for row in table().values() if row.name == cause.rests_on), None) if cause.rests_on else None
-
-
-def stated(loaded: LoadedJob, path: str, cause: Cause | None = None) -> Stated | None:
-    """The entry a cause rests on, a device alone by its typical value; None where it is not one number."""
-    row = _row(cause) if cause is not None else None
-    if row is not None and ".divide." not in path:  # those of a division come together, as `_recorded` has them
-        return Stated(row.value, "um")
-    node = _node(loaded, path)
-    if isinstance(node, Deviation):
-        value = node.measured if node.measured is not None else node.at_most
-        if value is None:
-            row = typical(node.device or "", path.rpartition(".")[2])
-            return Stated(row.value, "um") if row is not None else None
-        return Stated(abs(value), "um", guard_of(node))
-    if isinstance(node, Dimension):
-        half = node.uncertainty if node.uncertainty is not None else ((node.upper or 0.0) - (node.lower or 0.0)) / 2.0
-        return Stated(half, "um")
-    if isinstance(node, tuple) and len(node) == 2:
-        return Stated(float(node[1]), "um", least=float(node[0]))
-    if isinstance(node, float):
-        if path.endswith(".polygon_tilt"):  # it counts by its square
-            return None
-        length = path.rpartition(".")[2] in LENGTHS_OF_A_DIVISION
-        angular = not length and any(word in path for word in (".divide.", ".tilt", "shaft_angle"))
-        return Stated(node, "arcsec" if angular else "um")
-    return None
-
-
-LENGTHS_OF_A_DIVISION = ("centring", "blocks", "x", "y")
-"""Keys under `divide` that state a length; all others state an angle."""
 
 
 @record
@@ -207,16 +143,16 @@ def _shimmed(floor: Floor, result: Result) -> Shim | None:
 
 
 def _remedy(loaded: LoadedJob, floor: Floor, result: Result, trials: dict[tuple[int, str], Swap | None]) -> Remedy:
+    over = finished(loaded.job)
     grip = _gripped(result)
-    if grip:
+    if grip and op_of(grip) not in over:
         return Remedy(grip=grip)
     shim = _shimmed(floor, result)
-    if shim is not None:
+    if shim is not None and shim.op not in over:
         return Remedy(shim=shim)
-    again = cut_again(floor, result)
+    again, insert = _of_the_cut(loaded, floor, result, over)
     if again is not None:
         return Remedy(again=again)
-    insert = _another_insert(loaded, floor, result)
     if insert is not None:
         return Remedy(insert=insert)
     one = _cut_back(loaded, result, most=1)
@@ -225,7 +161,7 @@ def _remedy(loaded: LoadedJob, floor: Floor, result: Result, trials: dict[tuple[
     swap = next(_swaps(loaded, result, trials), None)
     if swap is not None:
         return Remedy(swap=swap)
-    own, figure = _recorded(result)
+    own, figure = _recorded(result, over)
     if own and worst_excess(figure, result.stack.low, result.stack.high) <= 0.0:
         return Remedy(own=own)
     two = _cut_back(loaded, result, most=2)
@@ -233,6 +169,22 @@ def _remedy(loaded: LoadedJob, floor: Floor, result: Result, trials: dict[tuple[
         return Remedy(two)
     one = _cut_back(loaded, replace(result, figure=figure), most=1)
     return Remedy(one, own=own) if own and one else Remedy(_cut_back(loaded, result, most=1, bought=True))
+
+
+def _of_the_cut(
+    loaded: LoadedJob, floor: Floor, result: Result, over: frozenset[int]
+) -> tuple[CutAgain | None, Wider | None]:
+    """More depth for a measured wheel, else another insert, while its cut is still to come.
+
+    Axes that come closer together are no setup, so that is left when the cut is done.
+    """
+    found = drive(floor)
+    cut = wheel_cut(floor, found) if isinstance(found, Drive) else None
+    done = isinstance(cut, WheelCut) and cut.op in over
+    again = cut_again(floor, result)
+    if again is not None:
+        return (again if not done or again.deeper < 0.0 else None), None
+    return None, None if done else _another_insert(loaded, floor, result)
 
 
 def _gripped(result: Result) -> str:
@@ -286,7 +238,7 @@ def _another_insert(loaded: LoadedJob, floor: Floor, result: Result) -> Wider | 
     return Wider(path, now, needed)
 
 
-def _recorded(result: Result) -> tuple[tuple[Change, ...], Figure]:
+def _recorded(result: Result, over: frozenset[int]) -> tuple[tuple[Change, ...], Figure]:
     """All typical errors of one division made smaller alike, to what the head's own record has to show; the figure then.
 
     All of them, because a record that states one takes the place of every typical value.  By RECORD_BETTER where even that
@@ -296,7 +248,7 @@ def _recorded(result: Result) -> tuple[tuple[Change, ...], Figure]:
     each = [
         (c, row)
         for c in origins(reaches(figure))
-        if any(".divide." in p for p in c.paths) and (row := _row(c)) is not None
+        if any(".divide." in p for p in c.paths) and (row := row_of(c)) is not None and c.op not in over
     ]
     if not each:
         return (), figure
@@ -324,12 +276,14 @@ def _cut_back(loaded: LoadedJob, result: Result, *, most: int, bought: bool = Fa
 
     Each but the last is cut back as far as care goes (LEAST_KEPT), the last just as far as is needed.
     """
-    stack, figure = result.stack, result.figure
+    stack, figure, over = result.stack, result.figure, finished(loaded.job)
     changes: list[Change] = []
     for cause in _by_weight(figure):
         entries = [(path, stated(loaded, path, cause)) for path in cause.paths]
         said = entries[0][1] if entries else None
         if said is None or said.now <= 0.0 or cause.mode == "derived" or (cause.op is None and not bought):
+            continue
+        if cause.op in over:
             continue
         least, largest = span(figure, reaches(figure), cause, said.now, said.guard, low=stack.low, high=stack.high)
         if least == 0.0 and largest < said.now and _down(largest, said.unit) > said.least:
@@ -366,7 +320,7 @@ def _changes(loaded: LoadedJob, cause: Cause, entries: list[tuple[str, Stated | 
 
 def _twins(loaded: LoadedJob, path: str) -> Iterator[str]:
     """The other entries that speak of the same kept device with the same value, in the same plane."""
-    mine = _deviation(loaded, path)
+    mine = deviation(loaded, path)
     step = path.split(".")[-2]
     if mine is None:
         return
@@ -391,7 +345,12 @@ def _swaps(loaded: LoadedJob, result: Result, trials: dict[tuple[int, str], Swap
     biggest = result.combined.shares[0].cause
     setup = next((s for s in loaded.job.setups if s.op == biggest.op), None)
     centre = setup.hold.centre if setup is not None and setup.hold is not None else None
-    if setup is None or centre is None or f"setups.{setup.op}.hold.centre.runout" not in biggest.paths:
+    if (
+        setup is None
+        or centre is None
+        or setup.op in finished(loaded.job)
+        or f"setups.{setup.op}.hold.centre.runout" not in biggest.paths
+    ):
         return
     involved = {s.cause.op for s in result.combined.shares}
     for other in loaded.job.setups:

@@ -28,10 +28,14 @@ from setupcheck.quantities.marking import MARK
 from setupcheck.quantities.measuring import MEASURE
 from setupcheck.quantities.meshing import MESHING
 from setupcheck.quantities.opening import OPENING
+from setupcheck.quantities.opposite import OPPOSITE
 from setupcheck.quantities.placing import PLACE
 from setupcheck.quantities.pressing import PRESSING
+from setupcheck.quantities.progress import PROGRESS
+from setupcheck.quantities.prove_out import PROVE
 from setupcheck.quantities.stated import STATED
 from setupcheck.quantities.strength import STRENGTH
+from setupcheck.quantities.then_now import THEN_NOW
 from setupcheck.quantities.thread import THREAD
 from setupcheck.quantities.through import THROUGH
 from setupcheck.quantities.tilting import TILT
@@ -302,4 +306,8 @@ TABLES: tuple[Quantity, ...] = (
     *ADVICE,
     *CLAMP,
     *MEASURE,
+    *THEN_NOW,
+    *PROGRESS,
+    *PROVE,
+    *OPPOSITE,
 )

@@ -15,6 +15,7 @@ from setupcheck.report.heating_plan import heating_plans_as_data
 from setupcheck.report.insert import inserts_as_data
 from setupcheck.report.joint import joints_as_data
 from setupcheck.report.remedies import remedy_in_words
+from setupcheck.report.then_now import then_of
 from setupcheck.report.uncomputed import uncomputed
 from setupcheck.report.wording import clean
 from setupcheck.report.worked_out import worked_out
@@ -156,10 +157,25 @@ def _stack(found: Review, scope: Scope) -> dict[str, object]:
         "limit": {"low": _shown(stack.low, unit), "high": _shown(stack.high, unit)},
         "unit": unit,
     }
-    result = found.results.get(scope.key)
+    result, then = found.results.get(scope.key), then_of(found, scope)
+    planned = {"then": _then(then, result, unit) if then is not None else None}
     if result is None:
-        return {**head, "worst": None, "rss": None, "likely": None, "chance": None, "chance_error": None, "causes": []}
-    return {**head, **_combined(result, unit)}
+        nothing: dict[str, object] = {
+            "worst": None,
+            "rss": None,
+            "likely": None,
+            "chance": None,
+            "chance_error": None,
+            "causes": [],
+        }
+        return {**head, **nothing, **planned}
+    return {**head, **_combined(result, unit), **planned}
+
+
+def _then(then: Result, now: Result | None, unit: str) -> dict[str, object]:
+    """The requirement as planned, where a measured value reaches it, with both margins."""
+    margin = _shown(now.margin, unit) if now is not None else None
+    return {**_combined(then, unit), "margin": _shown(then.margin, unit), "margin_now": margin}
 
 
 def _combined(result: Result, unit: str) -> dict[str, object]:

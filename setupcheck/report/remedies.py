@@ -6,6 +6,7 @@ from typing import TYPE_CHECKING
 
 from setupcheck.flow import Review
 from setupcheck.notation import show
+from setupcheck.quantities.finished import finished
 from setupcheck.report.causes import cause_in_parts
 from setupcheck.report.wording import finer, on_the_dial
 from setupcheck.rulebook import Finding
@@ -21,6 +22,9 @@ MARK_MORE = (
     "Grind the insert to the envelope, set the head to the lead angle, and take the smallest cutter circle that keeps the ends "
     "of the face clear (cutters, tip_radius), since a larger one marks less; or ask for less."
 )
+ELSE_DONE = "No entry of a setup still to come closes it. See what can still be moved, or measure closer what is done."
+MEASURING = "MEASURE"
+"""Rules whose remedy is another reading, which a setup that is done still allows."""
 INSTEAD = {
     "backlash": "No one or two entries close it. Measure insert, thread and centre distance closer, or ask for less.",
     "contact-area": MARK_MORE,
@@ -37,6 +41,8 @@ def remedy_in_words(found: Review, finding: Finding) -> str:
     if finding.rule in STACK_RULES and finding.key in found.remedies:
         told = _worked_out(found.remedies[finding.key], inches=found.book.inches)
         return told or _last_resort(found, finding)
+    if finding.op in finished(found.loaded.job) and not finding.rule.startswith(MEASURING):
+        return f"Op {finding.op} is done, so only its like can be made so next time: {finding.remedy}"
     return finding.remedy
 
 
@@ -45,6 +51,8 @@ def _last_resort(found: Review, finding: Finding) -> str:
     result = found.results.get(finding.key)
     if result is None:
         return finding.remedy
+    if found.loaded.job.done is not None:
+        return ELSE_DONE
     instead = INSTEAD.get(result.stack.require.what)
     if instead is not None:
         return instead

@@ -8,6 +8,7 @@ from setupcheck.flow import Review
 from setupcheck.ledger.combine import TRIALS
 from setupcheck.notation import show
 from setupcheck.quantities.book import Open, Scope
+from setupcheck.quantities.finished import finished
 from setupcheck.quantities.gates import Gate
 from setupcheck.quantities.judged import Result
 from setupcheck.report.causes import cause_in_words
@@ -15,7 +16,10 @@ from setupcheck.report.contact import contacts
 from setupcheck.report.heating_plan import heating_plans
 from setupcheck.report.insert import inserts
 from setupcheck.report.joint import joints
+from setupcheck.report.progress import still_to_move
+from setupcheck.report.prove_out import prove_outs
 from setupcheck.report.remedies import remedy_in_words
+from setupcheck.report.then_now import then_now
 from setupcheck.report.uncomputed import in_lines, uncomputed
 from setupcheck.report.wording import as_stated, clean, finer, in_unit, on_the_dial, title_of, unit_of, wrap
 from setupcheck.report.worked_out import worked_out
@@ -39,6 +43,9 @@ def as_text(found: Review, *, everything: bool = False) -> str:
         _stops(found),
         _findings(found, everything),
         _requirements(found, everything),
+        then_now(found, everything),
+        still_to_move(found),
+        prove_outs(found),
         joints(found),
         heating_plans(found),
         contacts(found),
@@ -275,14 +282,16 @@ def _statistics(result: Result, unit: str, digits: int, confidence: float) -> st
 
 
 def _gates(found: Review) -> Iterator[str]:
-    if not found.gates:
+    over = finished(found.loaded.job)
+    gates = [gate for gate in found.gates if not over.issuperset((gate.op, *gate.also))]
+    if not gates:
         return
     inches = found.book.inches
     titles = {scope.key: title_of(scope) for scope in found.book.instances("stack")}
     yield "DIAL READING TO ACCEPT, all else as planned"
-    idle = [gate for gate in found.gates if _is_idle(gate)]
+    idle = [gate for gate in gates if _is_idle(gate)]
     lost: dict[str, list[str]] = {}
-    for gate in found.gates:
+    for gate in gates:
         title = titles.get(gate.by, gate.by)
         if gate.reading is not None and gate.reading <= 0.0:
             lost.setdefault(title, []).append(_dial(gate))

@@ -27,6 +27,8 @@ SENTENCES: Sequence[tuple[str, str, str]] = (
         "{cutter.width_needed} wide at pitch height and {cutter.tip_width} at its tip fit the thread without backlash",
     ),
     ("place", "place", "{place.shim}"),
+    ("join", "mounting", "{opposite.says}"),
+    ("hold", "devices", "{opposite.chain_says}"),
     (
         "worm",
         "worm",

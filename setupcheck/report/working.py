@@ -47,6 +47,9 @@ COUNTED = {
     "divide.off_position": "of a position",
     "divide.folded_harmonic": "waves round the work",
     "hold.reach": "times the distance of the planes",
+    "prove.count": "gaps",
+    "prove.gap_out": "by the order of cutting",
+    "progress.done": "is the last operation done",
     "hold.tilt_datums": "(1 wanted)",
 }
 """What a number without a unit counts."""

@@ -283,6 +283,16 @@ QUANTITIES: Mapping[str, FakeQuantity] = {
         FakeQuantity("measure.end_float", "stack", "", 0),
         FakeQuantity("measure.planned", "hold", "um", 1),
         FakeQuantity("measure.half_division", "hold", "um", 1),
+        FakeQuantity("prove.enough", "cut", "", 0),
+        FakeQuantity("prove.most", "cut", "um", 1),
+        FakeQuantity("prove.allowed", "cut", "um", 1),
+        FakeQuantity("prove.misfit", "cut", "um", 1),
+        FakeQuantity("prove.reading_uncertainty", "cut", "um", 1),
+        FakeQuantity("prove.shift", "cut", "um", 1),
+        FakeQuantity("prove.stock", "cut", "um", 0),
+        FakeQuantity("prove.move", "cut", "", 0),
+        FakeQuantity("opposite.saves", "join", "um", 1),
+        FakeQuantity("opposite.says", "join", "", 0),
     )
 }
 """The quantities that the shipped rules name, written down once more so that a change on one side is noticed."""

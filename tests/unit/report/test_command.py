@@ -117,6 +117,7 @@ def test_json_has_format_1_and_the_keys_that_were_promised(job: Path) -> None:
         "chance",
         "chance_error",
         "causes",
+        "then",
     } == set(data["stacks"][0])
     assert {"cause", "op", "mode", "worst", "share"} == set(data["stacks"][0]["causes"][0])
     assert {

@@ -8,7 +8,18 @@ import json
 import pytest
 from pydantic import BaseModel
 
-from setupcheck.jobfile import dividing, grinding, heating, insert_profile, marks, models, properties, setups, worm
+from setupcheck.jobfile import (
+    dividing,
+    grinding,
+    heating,
+    insert_profile,
+    marks,
+    models,
+    properties,
+    prove_out,
+    setups,
+    worm,
+)
 from setupcheck.report.json import as_json
 from setupcheck.report.text import as_text
 from setupcheck.report.uncomputed import NOT_LOOKED_AT, in_lines, uncomputed
@@ -60,19 +71,20 @@ READ = {
     "Scatter": "radial tangential by",
     "Touched": "surface measured uncertainty at_most tool",
     "Cut": "passes to state leave_on_diameter leave_on_radius leave error removes from_surface finishing_cut form cutter each "
-    "spindle_to_axis tool_change_after",
+    "spindle_to_axis tool_change_after prove_out",
+    "ProveOut": "depth ball about readings uncertainty",
     "Heat": "hub shaft by oven_error read_by carry cold_by cold_error gauge flash_point room_volume coolant",
     "Join": "outer inner by square fit_error clearance rests stop mounted_at",
     "Setup": "op note machine part looks_at_tool keeps hold head divide cut join",
     "Job": "setupcheck title job revision units room confidence parts worm mesh cutters machines setups place require "
-    "waive checked",
+    "waive checked done",
 }
 """Entries that some figure, rule, caution or check reads, that only name things, or that are told by their own line
 (size classes and limits, slot widths, the room, everything inside `heat`, `mark` and `depth_from`)."""
 
 RECORDS = {
     record.__name__: record  # not the name it is found under: some have a second one
-    for module in (dividing, grinding, insert_profile, models, properties, setups, heating, worm, marks)
+    for module in (dividing, grinding, insert_profile, models, properties, prove_out, setups, heating, worm, marks)
     for record in vars(module).values()
     if inspect.isclass(record)
     and issubclass(record, BaseModel)
