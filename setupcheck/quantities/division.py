@@ -9,6 +9,7 @@ from setupcheck.quantities.book import Known, Open, Quantity, in_range
 from setupcheck.quantities.dividing import typical_errors
 from setupcheck.quantities.route import machine_of
 from setupcheck.quantities.shop import Floor
+from setupcheck.quantities.typical import is_own
 
 
 def count(floor: Floor, setup: Setup) -> int | None:
@@ -70,12 +71,14 @@ def circles(floor: Floor, setup: Setup, worm_ratio: int, count: int) -> str | No
     )
 
 
-def crank_error(setup: Setup) -> float | Known | None:
+def crank_error(floor: Floor, setup: Setup) -> float | Known | None:
     """Amplitude of the error that comes once per turn of the crank [rad]. Source: the job file, else the typical one."""
     if setup.divide is None:
         return None
     if setup.divide.worm is not None:
-        return setup.divide.worm.once_per_crank or setup.divide.worm.once_per_turn or None
+        size = setup.divide.worm.once_per_crank or setup.divide.worm.once_per_turn or None
+        own = floor.loaded.owned(f"setups.{setup.op}.divide.worm.once_per_crank")
+        return Known(size, own) if size is not None else None
     return _typical(setup.divide, "worm.once_per_crank")
 
 
@@ -104,23 +107,28 @@ def step_error(count: int, step: float) -> float:
         return max(abs(error) for error in rounded_settings(count, step))
 
 
-def setting_error(setup: Setup) -> float | Known | None:
+def setting_error(floor: Floor, setup: Setup) -> float | Known | None:
     """Error of one setting [rad]. Source: the job file, else the typical one."""
     if setup.divide is None:
         return None
-    return setup.divide.setting if setup.divide.setting is not None else _typical(setup.divide, "setting")
+    if setup.divide.setting is None:
+        return _typical(setup.divide, "setting")
+    return Known(setup.divide.setting, floor.loaded.owned(f"setups.{setup.op}.divide.setting"))
 
 
-def stated(setup: Setup, count: int) -> str | Open:
+def stated(floor: Floor, setup: Setup, count: int) -> str | Known | Open:
     """stated or typical, of the dividing device's own error; open with the key to fill.
 
+    What the shop's record says of the head is stated, unless a typical value has to stand beside it.
     Source: the job file; where it states no error, the typical ones of the way of dividing.
     """
     if setup.divide is None:
         return Open((f"setups.{setup.op}.divide",))
     assert count > 1
     if setup.divide.wheel is not None or setup.divide.setting is not None:
-        return "stated"
+        path = f"setups.{setup.op}.divide."
+        own = floor.loaded.owned(*(p for p in floor.loaded.own if p.startswith(path)))
+        return Known("stated" if all(map(is_own, own)) else "typical", own)
     return "typical" if typical_errors(setup.divide) else Open((f"setups.{setup.op}.divide.wheel",))
 
 
@@ -157,6 +165,7 @@ def known_kind(stated: str) -> str:
     return stated
 
 
+_HERE = {"floor": "route.floor", "setup": ":"}
 RATIO, COUNT = {"worm_ratio": "divide.worm_ratio"}, {"count": "divide.count"}
 
 DIVIDE = (
@@ -183,7 +192,7 @@ DIVIDE = (
         {**RATIO, **COUNT, "circle": "divide.circle"},
         "part of a hole that one step leaves over",
     ),
-    Quantity("divide.crank_error", "setup", "arcsec", 1, crank_error, {"setup": ":"}, "error once per crank turn"),
+    Quantity("divide.crank_error", "setup", "arcsec", 1, crank_error, _HERE, "error once per crank turn"),
     Quantity(
         "divide.folded_harmonic",
         "setup",
@@ -203,14 +212,14 @@ DIVIDE = (
         {**COUNT, "step": "divide.step"},
         "largest error of a setting rounded to the readout's step",
     ),
-    Quantity("divide.setting_error", "setup", "arcsec", 2, setting_error, {"setup": ":"}, "error of one setting"),
+    Quantity("divide.setting_error", "setup", "arcsec", 2, setting_error, _HERE, "error of one setting"),
     Quantity(
         "divide.error_stated",
         "setup",
         "",
         0,
         stated,
-        {"setup": ":", **COUNT},
+        {**_HERE, **COUNT},
         "whether the dividing method's errors are stated",
     ),
     Quantity(
