@@ -33,6 +33,7 @@ from setupcheck.rulebook import (
 from setupcheck.shipped import shipped
 
 if TYPE_CHECKING:
+    from setupcheck.quantities.own_values import RecordUse
     from setupcheck.quantities.remedies import Remedy
     from setupcheck.rulebook.house import House
 
@@ -42,6 +43,7 @@ class Review:
     """Everything one review found.
 
     results   combined stacks by instance, those that could be computed;  remedies likewise, for stacks outside their limit
+    devices   the shop's own record of its devices, and where the job names what stands in it
     """
 
     loaded: LoadedJob
@@ -55,6 +57,7 @@ class Review:
     gates: tuple[Gate, ...]
     remedies: Mapping[str, Remedy] = field(default_factory=dict)
     on: str | None = None
+    devices: RecordUse | None = None
 
 
 @cache
@@ -71,13 +74,23 @@ def load_job(path: str | Path) -> LoadedJob:
     return read_job(path)
 
 
-def review(job: LoadedJob | str | Path, *, house: str | Path | None = None, on: str | None = None) -> Review:
+def review(
+    job: LoadedJob | str | Path,
+    *,
+    house: str | Path | None = None,
+    on: str | None = None,
+    devices: str | Path | None = None,
+) -> Review:
     """Judge a job.
 
-    house  file of a shop's own limits;  on  the day it is judged (ISO date), which waivers with an end need
+    house    file of a shop's own limits;  on  the day it is judged (ISO date), which waivers with an end need
+    devices  file of a shop's own record of its devices, whose limits stand in for typical values
     Raises: JobError, RuleBookError.
     """
     loaded = job if isinstance(job, LoadedJob) else load_job(job)
+    uses: RecordUse | None = None
+    if devices is not None:
+        loaded, uses = with_devices(loaded, devices)
     floor, book = prepare(loaded)
     book_of_rules = rules()
     own = _house(Path(house), book_of_rules, book) if house is not None else None
@@ -101,7 +114,19 @@ def review(job: LoadedJob | str | Path, *, house: str | Path | None = None, on: 
         tuple(gates(book.scopes, list(results.items()))),
         _remedies(loaded, floor, results),
         on,
+        uses,
     )
+
+
+def with_devices(loaded: LoadedJob, path: str | Path) -> tuple[LoadedJob, RecordUse]:
+    """The job with the limits of a shop's own record of its devices in place of typical values.
+
+    Raises: JobError with every problem of the record.
+    """
+    from setupcheck.quantities.device_record import read_record  # few jobs have one
+    from setupcheck.quantities.own_values import with_record
+
+    return with_record(loaded, read_record(path))
 
 
 def _house(path: Path, rulebook: RuleBook, book: Book) -> House:

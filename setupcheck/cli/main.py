@@ -18,7 +18,7 @@ plugins.leave_out()
 
 import typer  # noqa: E402
 
-from setupcheck.cli import contact, index, insert, review, rules, working  # noqa: E402
+from setupcheck.cli import contact, index, insert, record, review, rules, working  # noqa: E402
 from setupcheck.errors import SetupcheckError  # noqa: E402
 
 app = typer.Typer(
@@ -35,6 +35,7 @@ app.command("working")(working.command)
 app.command("contact")(contact.command)
 app.command("insert")(insert.command)
 app.command("index")(index.command)
+app.command("record")(record.command)
 app.command("rules")(rules.command)
 
 

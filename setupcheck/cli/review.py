@@ -19,6 +19,9 @@ def command(
         bool, typer.Option("--all", help="Passed findings, every cause and every caution as well.")
     ] = False,
     house: Annotated[Path | None, typer.Option(help="File of your shop's own limits.", show_default=False)] = None,
+    record: Annotated[
+        Path | None, typer.Option(help="CSV of what your shop's own devices gave.", show_default=False)
+    ] = None,
     on: Annotated[
         str | None, typer.Option(help="Day of the review (2027-03-31), for waivers that end.", show_default=False)
     ] = None,
@@ -37,7 +40,7 @@ def command(
     worst = 0
     for path in jobs:
         try:
-            code, text = _reviewed(path, as_json=as_json, everything=everything, house=house, on=on)
+            code, text = _reviewed(path, as_json=as_json, everything=everything, house=house, record=record, on=on)
         except SetupcheckError as wrong:
             print(wrong, file=sys.stderr)
             worst = max(worst, 2)
@@ -56,10 +59,12 @@ def _day(text: str) -> str:
         raise typer.BadParameter(f"'{text}' is not a day. Write it as 2027-03-31", param_hint="--on") from None
 
 
-def _reviewed(path: Path, *, as_json: bool, everything: bool, house: Path | None, on: str | None) -> tuple[int, str]:
+def _reviewed(
+    path: Path, *, as_json: bool, everything: bool, house: Path | None, record: Path | None, on: str | None
+) -> tuple[int, str]:
     from setupcheck.flow import review
 
-    found = review(path, house=house, on=on)
+    found = review(path, house=house, on=on, devices=record)
     if as_json:
         from setupcheck.report.json import as_json as report
 

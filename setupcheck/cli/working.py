@@ -19,14 +19,19 @@ def command(
             show_default=False,
         ),
     ],
+    record: Annotated[
+        Path | None, typer.Option(help="CSV of what your shop's own devices gave.", show_default=False)
+    ] = None,
 ) -> None:
     """Show formula, inputs with their lines, source and evidence of one number.
 
     Example: setupcheck working jobs/index-plate.yaml require[1]
     """
-    from setupcheck.flow import load_job, prepare
+    from setupcheck.flow import load_job, prepare, with_devices
     from setupcheck.report.working import as_working
 
     loaded = load_job(job)
+    if record is not None:
+        loaded, _ = with_devices(loaded, record)
     _, book = prepare(loaded)
     sys.stdout.write(as_working(loaded, book, quantity))

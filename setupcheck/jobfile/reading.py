@@ -6,6 +6,7 @@ import hashlib
 import re
 from collections.abc import Iterable, Iterator, Mapping, Sequence
 from contextlib import suppress
+from dataclasses import field as of_record
 from pathlib import Path
 from types import UnionType
 from typing import Annotated, Literal, TypeVar, Union, get_args, get_origin
@@ -48,12 +49,18 @@ class LoadedJob:
     """A job with the places of its entries.
 
     file  base name of the file;  sha256 of its text
+    own   path -> what a shop's record, or a typical value beside it, put there instead of the planner
     """
 
     job: Job
     tree: Tree
     file: str
     sha256: str
+    own: Mapping[str, str] = of_record(default_factory=dict)
+
+    def owned(self, *paths: str) -> frozenset[str]:
+        """What the values at these paths rest on, those that the planner did not write himself."""
+        return frozenset(self.own[path] for path in paths if path in self.own) if self.own else frozenset()
 
     def loc(self, path: str) -> Loc:
         """The way through the tree of a shop path. A setup is called by its operation number, an entry of any other

@@ -91,7 +91,8 @@ def shaft_at(floor: Floor, join: Join, op: int, gain: float) -> float | Known | 
     if join.heat is None or not join.heat.chills(room):
         return join.heat.shaft if join.heat is not None and join.heat.shaft is not None else room
     start = out_of_the_cold(join, op)
-    return start if isinstance(start, Open) else Known(start[0] + gain, start[1])
+    own = floor.loaded.owned(f"setups.{op}.join.heat.cold_error")
+    return start if isinstance(start, Open) else Known(start[0] + gain, start[1] | own)
 
 
 def kind_of_cold_error(floor: Floor, join: Join, at: float) -> str | None:

@@ -71,12 +71,14 @@ def circles(floor: Floor, setup: Setup, worm_ratio: int, count: int) -> str | No
     )
 
 
-def crank_error(setup: Setup) -> float | Known | None:
+def crank_error(floor: Floor, setup: Setup) -> float | Known | None:
     """Amplitude of the error that comes once per turn of the crank [rad]. Source: the job file, else the typical one."""
     if setup.divide is None:
         return None
     if setup.divide.worm is not None:
-        return setup.divide.worm.once_per_crank or setup.divide.worm.once_per_turn or None
+        size = setup.divide.worm.once_per_crank or setup.divide.worm.once_per_turn or None
+        own = floor.loaded.owned(f"setups.{setup.op}.divide.worm.once_per_crank")
+        return Known(size, own) if size is not None else None
     return _typical(setup.divide, "worm.once_per_crank")
 
 
@@ -105,11 +107,13 @@ def step_error(count: int, step: float) -> float:
         return max(abs(error) for error in rounded_settings(count, step))
 
 
-def setting_error(setup: Setup) -> float | Known | None:
+def setting_error(floor: Floor, setup: Setup) -> float | Known | None:
     """Error of one setting [rad]. Source: the job file, else the typical one."""
     if setup.divide is None:
         return None
-    return setup.divide.setting if setup.divide.setting is not None else _typical(setup.divide, "setting")
+    if setup.divide.setting is None:
+        return _typical(setup.divide, "setting")
+    return Known(setup.divide.setting, floor.loaded.owned(f"setups.{setup.op}.divide.setting"))
 
 
 def known_kind(stated: str) -> str:
@@ -117,6 +121,7 @@ def known_kind(stated: str) -> str:
     return stated
 
 
+_HERE = {"floor": "route.floor", "setup": ":"}
 RATIO, COUNT = {"worm_ratio": "divide.worm_ratio"}, {"count": "divide.count"}
 
 DIVIDE = (
@@ -143,7 +148,7 @@ DIVIDE = (
         {**RATIO, **COUNT, "circle": "divide.circle"},
         "part of a hole that one step leaves over",
     ),
-    Quantity("divide.crank_error", "setup", "arcsec", 1, crank_error, {"setup": ":"}, "error once per crank turn"),
+    Quantity("divide.crank_error", "setup", "arcsec", 1, crank_error, _HERE, "error once per crank turn"),
     Quantity(
         "divide.folded_harmonic",
         "setup",
@@ -163,7 +168,7 @@ DIVIDE = (
         {**COUNT, "step": "divide.step"},
         "largest error of a setting rounded to the readout's step",
     ),
-    Quantity("divide.setting_error", "setup", "arcsec", 2, setting_error, {"setup": ":"}, "error of one setting"),
+    Quantity("divide.setting_error", "setup", "arcsec", 2, setting_error, _HERE, "error of one setting"),
     Quantity(
         "divide.circle_there",
         "setup",

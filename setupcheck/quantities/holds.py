@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from setupcheck.jobfile.setups import Centre, Setup
-from setupcheck.quantities.book import Open
+from setupcheck.quantities.book import Known, Open
 from setupcheck.quantities.judged import Result
 from setupcheck.quantities.route import machine_of
 from setupcheck.quantities.scopes import HoldEntry
@@ -26,10 +26,10 @@ def tilt_datums(floor: Floor, setup: Setup) -> float | None:
     return float(count) if count is not None else None
 
 
-def error_stated(entry: HoldEntry, key: str) -> str | Open:
+def error_stated(entry: HoldEntry, key: str, floor: Floor) -> str | Known | Open:
     """measured, stated or typical; Open with the path where nothing is said, or where no typical value is known.
 
-    Source: the job file.
+    What the shop's record says of a device is stated.  Source: the job file.
     """
     given = entry.error
     path = f"{key}.{entry.key}"
@@ -40,7 +40,7 @@ def error_stated(entry: HoldEntry, key: str) -> str | Open:
     if given.measured is not None:
         return "measured"
     if given.at_most is not None:
-        return "stated"
+        return Known("stated", floor.loaded.owned(path))
     device = given.device or str(getattr(entry.entry, "by", ""))
     if (typical_length(device) if entry.key == "error" else typical(device, entry.key)) is None:
         return Open((f"{path}.at_most",), f"no typical value is known for {device}")
@@ -153,7 +153,7 @@ def overhang(floor: Floor, key: str, entry: HoldEntry) -> float | None:
     return max(farthest - grip, 0.0) / datum.diameter
 
 
-def machine_error_stated(floor: Floor, setup: Setup) -> str | Open | None:
+def machine_error_stated(floor: Floor, setup: Setup) -> str | Known | Open | None:
     """stated or typical for the machine's own axis; Open where no machine is named. Source: the job file."""
     if setup.join is not None:
         return None
@@ -162,5 +162,5 @@ def machine_error_stated(floor: Floor, setup: Setup) -> str | Open | None:
         return Open((f"setups.{setup.op}.machine",))
     given = machine.axis_runout
     if given is not None and (given.at_most is not None or given.measured is not None):
-        return "stated"
+        return Known("stated", floor.loaded.owned(f"machines.{name}.axis_runout"))
     return "typical" if typical(machine.kind, "axis") is not None else Open((f"machines.{name}.axis_runout",))

@@ -202,7 +202,8 @@ def _planned(floor: Floor, join: Join, op: int, way: float) -> Known | Open | No
     error = heat_error(heat)
     if heat.hub is None or error is None:
         return Open((f"{path}.hub",) * (heat.hub is None) + (f"{path}.{key_of_error(heat)}",) * (error is None))
-    return Known(heat.hub + way * error[0], frozenset({error[1]} - {""}))
+    own = floor.loaded.owned(f"{path}.oven_error")
+    return Known(heat.hub + way * error[0], frozenset({error[1]} - {""}) | own)
 
 
 def planned_low(floor: Floor, join: Join, op: int) -> Known | Open | None:

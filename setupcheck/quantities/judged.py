@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from dataclasses import replace
 
+from setupcheck.jobfile.reading import LoadedJob
 from setupcheck.ledger.combine import Combined, Draws, Ends, combine
 from setupcheck.ledger.figures import Figure
 from setupcheck.quantities.book import Known, Open
@@ -63,14 +64,16 @@ def requirements(floor: Floor) -> float:
     return float(len(floor.loaded.job.require))
 
 
-def _known(built: Built | Open) -> Known | Open:
-    """A figure with the typical values that the causes behind it were made with."""
+def _known(built: Built | Open, loaded: LoadedJob) -> Known | Open:
+    """A figure with the typical values, and the limits of the shop's record, that the causes behind it were made with."""
     if isinstance(built, Open):
         return built
     causes = [push.cause for push in built.figure.pushes()]
-    return Known(
-        built, frozenset(c.rests_on for one in causes for c in (one.of.origins() if one.of else (one,))) - {""}
-    )
+    first = [c for one in causes for c in (one.of.origins() if one.of else (one,))]
+    rests_on = frozenset(c.rests_on for c in first) - {""}
+    if loaded.own:
+        rests_on |= loaded.owned(*(path for c in first for path in c.paths))
+    return Known(built, rests_on)
 
 
 def built(floor: Floor, stack: Stack) -> Known | Open:
@@ -78,7 +81,7 @@ def built(floor: Floor, stack: Stack) -> Known | Open:
 
     relation of G about R = account of G - account of R at the same height.  Source: derived here (design of the ledger).
     """
-    return _known(build(floor, stack))
+    return _known(build(floor, stack), floor.loaded)
 
 
 def combined(built: Built, stack: Stack, floor: Floor, draws: Draws) -> Result:
@@ -157,7 +160,7 @@ def stock_built(floor: Floor, key: str) -> Known | Open | None:
 
     leave/2 - e - |t| lever.  Source: geometry, derived here.
     """
-    return _known(stock_left(floor, key)) if key in floor.stock else None
+    return _known(stock_left(floor, key), floor.loaded) if key in floor.stock else None
 
 
 def least_stock(built: Built, entry: CutEntry) -> float:

@@ -211,7 +211,10 @@ def chain_saves(chain: Chain) -> float:
 
 
 def chain_says(floor: Floor, chain: Chain) -> str | None:
-    """Which device against which, what the dial then shows and what it saves; None where it saves less than WORTH."""
+    """Which device against which, what the dial then shows and what it saves; None where it saves less than WORTH.
+
+    Source: two vectors turned against each other, geometry.
+    """
     if chain.saves < WORTH:
         return None
     (first, large), (second, small) = chain.first, chain.second

@@ -169,7 +169,7 @@ HOLD = (
         "",
         0,
         holds.error_stated,
-        {"entry": ":", "key": "@path"},
+        {"entry": ":", "key": "@path", "floor": "route.floor"},
         "whether the hold's error is measured, stated, typical or missing",
     ),
     Quantity(

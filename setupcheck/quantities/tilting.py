@@ -61,7 +61,8 @@ def allowed(floor: Floor, setup: Setup) -> Known | Open | None:
     found = head_uncertainty(setup.head) if setup.head is not None else None
     if found is None:
         return Open((f"setups.{setup.op}.head.uncertainty",))
-    return Known(found[0], frozenset({found[1]} - {""}))
+    own = floor.loaded.owned(f"setups.{setup.op}.head.uncertainty")
+    return Known(found[0], frozenset({found[1]} - {""}) | own)
 
 
 def kind_of_uncertainty(setup: Setup, allowed: float) -> str:

@@ -110,6 +110,23 @@ def typical(device: str, what: str) -> Typical | None:
     return max(found, key=lambda row: len(row.name), default=None)
 
 
+OWN = "shop record"
+
+
+def own_name(series: str, entries: int) -> str:
+    """As findings name a limit of the shop's own record in place of a typical value.
+
+    >>> own_name("four-jaw-A runout", 7)
+    'four-jaw-A runout (shop record, 7 entries)'
+    """
+    return f"{series} ({OWN}, {entries} entries)"
+
+
+def is_own(name: str) -> bool:
+    """Whether a name of what a value rests on is that of the shop's own record; no typical value has such a name."""
+    return f" ({OWN}, " in name
+
+
 def typical_length(device: str) -> Typical | None:
     """The typical error of a length set or read with a device: a position, a touch or a reading."""
     return next((row for what in ("position", "touch", "reading") if (row := typical(device, what)) is not None), None)

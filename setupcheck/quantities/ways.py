@@ -11,6 +11,7 @@ from setupcheck.notation import show
 from setupcheck.quantities.book import Known, Open, Quantity
 from setupcheck.quantities.dividing import HAS_WHEEL, has_own_errors, sight_errors, typical_errors
 from setupcheck.quantities.shop import Floor
+from setupcheck.quantities.typical import is_own
 
 HAS_WORM = ("hole-circle", "rotary-table")
 """Ways of dividing that turn a crank, so that wheel, worm and setting each have an error."""
@@ -20,9 +21,10 @@ LONGEST_SIGHT = 200_000.0
 """Farthest target that is worth advice [mm]. Source: our choice."""
 
 
-def own_error(setup: Setup, count: int) -> str | Open:
+def own_error(floor: Floor, setup: Setup, count: int) -> str | Known | Open:
     """stated or typical, of the dividing device's own error; open with the key to fill.
 
+    What the shop's record says of the head is stated, unless a typical value has to stand beside it.
     Source: the job file; where it states no error, the typical ones of the way of dividing.
     """
     divide = setup.divide
@@ -30,7 +32,9 @@ def own_error(setup: Setup, count: int) -> str | Open:
         return Open((f"setups.{setup.op}.divide",))
     assert count > 1
     if has_own_errors(divide):
-        return "stated"
+        path = f"setups.{setup.op}.divide."
+        own = floor.loaded.owned(*(p for p in floor.loaded.own if p.startswith(path)))
+        return Known("stated" if all(map(is_own, own)) else "typical", own)
     key = "x" if divide.by == "x-y" else "wheel"
     return "typical" if typical_errors(divide) else Open((f"setups.{setup.op}.divide.{key}",))
 
@@ -215,6 +219,7 @@ def single_error(setup: Setup) -> float | Known | None:
 
 
 _SETUP, _COUNT, _SINGLE = {"setup": ":"}, {"count": "divide.count"}, {"single_error": "divide.single_error"}
+_FLOOR = {"floor": "route.floor"}
 _POSITIONS = {"positions": "divide.positions", **_COUNT}
 
 
@@ -223,7 +228,14 @@ def _row(name: str, unit: str, digits: int, law: object, inputs: dict[str, str],
 
 
 WAYS = (
-    _row("error_stated", "", 0, own_error, {**_SETUP, **_COUNT}, "whether the dividing method's errors are stated"),
+    _row(
+        "error_stated",
+        "",
+        0,
+        own_error,
+        {"floor": "route.floor", **_SETUP, **_COUNT},
+        "whether the dividing method's errors are stated",
+    ),
     _row("left_out", "", 0, left_out, {**_SETUP, **_COUNT}, "errors of the division that nobody states"),
     _row("positions", "1", 0, positions, {**_SETUP, **_COUNT}, "notches, face-teeth or sides there are"),
     _row("off_position", "1", 3, off_position, _POSITIONS, "part of a position that one step leaves over"),

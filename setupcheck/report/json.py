@@ -15,6 +15,7 @@ from setupcheck.report.heating_plan import heating_plans_as_data
 from setupcheck.report.insert import inserts_as_data
 from setupcheck.report.joint import joints_as_data
 from setupcheck.report.remedies import remedy_in_words
+from setupcheck.report.rests import record_as_data
 from setupcheck.report.then_now import then_of
 from setupcheck.report.uncomputed import uncomputed
 from setupcheck.report.wording import clean
@@ -55,6 +56,7 @@ def as_data(found: Review) -> dict[str, object]:
         "setupcheck": __version__,
         "rule_book": {"version": found.rulebook.version, "sha256": found.rulebook.sha256},
         "house": {"sha256": house.sha256} if house is not None else None,
+        "record": record_as_data(found),
         "job": {"title": clean(job.title), "file": found.loaded.file, "sha256": found.loaded.sha256},
         "on": found.on,
         "verdict": found.verdict,

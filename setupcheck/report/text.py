@@ -19,6 +19,7 @@ from setupcheck.report.joint import joints
 from setupcheck.report.progress import still_to_move
 from setupcheck.report.prove_out import prove_outs
 from setupcheck.report.remedies import remedy_in_words
+from setupcheck.report.rests import how_known, record_used, rests_in_words
 from setupcheck.report.then_now import then_now
 from setupcheck.report.uncomputed import in_lines, uncomputed
 from setupcheck.report.wording import as_stated, clean, finer, in_unit, on_the_dial, title_of, unit_of, wrap
@@ -51,6 +52,7 @@ def as_text(found: Review, *, everything: bool = False) -> str:
         contacts(found),
         inserts(found),
         _worked_out(found),
+        record_used(found),
         _uncomputed(found),
         _gates(found),
         _cautions(found, everything),
@@ -169,8 +171,8 @@ def _finding(found: Review, finding: Finding, rules: str) -> Iterator[str]:
 
 
 def _rests_on(finding: Finding) -> Iterator[str]:
-    if finding.rests_on:
-        yield from wrap("Rests on typical values: " + ", ".join(finding.rests_on) + ".", first="      ", rest="      ")
+    for told in rests_in_words(finding.rests_on):
+        yield from wrap(f"{told}.", first="      ", rest="      ")
 
 
 def _margin(finding: Finding) -> str:
@@ -200,8 +202,7 @@ def _seen(size: float, unit: str, digits: int) -> str:
 def _share(found: Review, result: Result, most: int) -> list[str]:
     unit, digits = finer(result.stack.unit, inches=found.book.inches)
     return [
-        f"{cause_in_words(s.cause.key)} {show(s.worst, unit, digits)}"
-        + (" measured" if s.cause.mode == "measured" else " typical" if s.cause.mode == "typical" else "")
+        f"{cause_in_words(s.cause.key)} {show(s.worst, unit, digits)}" + how_known(s.cause, found.loaded)
         for s in result.combined.shares[:most]
         if s.worst > 0.0
     ]

@@ -18,6 +18,7 @@ from setupcheck.quantities.scopes import stack_of
 from setupcheck.report.asked import find
 from setupcheck.report.causes import cause_in_words
 from setupcheck.report.formulas import FORMULAS, OF_A_STACK, formula_of
+from setupcheck.report.rests import rests_in_words
 from setupcheck.report.wording import WIDTH, clean, finer, title_of, wrap
 from setupcheck.report.written import written
 
@@ -112,8 +113,9 @@ def _working(loaded: LoadedJob, book: Book, quantity: Quantity, scope: Scope) ->
         yield from _stated(book, quantity.of)
     for argument, name in quantity.inputs.items():
         yield from _input(loaded, book, scope, argument, name)
-    if isinstance(answer, Known) and answer.rests_on:
-        yield from wrap("rests on typical values: " + ", ".join(sorted(answer.rests_on)), first="  ", rest="    ")
+    if isinstance(answer, Known):
+        for told in rests_in_words(sorted(answer.rests_on)):
+            yield from wrap(told[:1].lower() + told[1:], first="  ", rest="    ")
 
 
 def _formula(told: tuple[str, str], first: str = "  ") -> Iterator[str]:

@@ -129,6 +129,10 @@ def test_a_review_to_a_pipe_loads_nothing_it_does_not_need() -> None:
         "setupcheck.rulebook.describe",
         "setupcheck.report.working",
         "setupcheck.report.json",
+        "setupcheck.report.device_record",
+        "setupcheck.quantities.device_record",
+        "setupcheck.quantities.own_values",
+        "setupcheck.physics.student_t",
     }
 
 

@@ -85,6 +85,7 @@ def test_json_has_format_1_and_the_keys_that_were_promised(job: Path) -> None:
         "setupcheck",
         "rule_book",
         "house",
+        "record",
         "job",
         "on",
         "verdict",

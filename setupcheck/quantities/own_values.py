@@ -1,0 +1,202 @@
+"""A shop's record of devices put into a job: its limits stand where typical values would. mm, rad, K."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator, Mapping
+from dataclasses import replace
+from typing import TypeVar
+
+from pydantic import BaseModel
+
+from setupcheck.jobfile.dividing import Divide, Waves
+from setupcheck.jobfile.models import Deviation, Machine
+from setupcheck.jobfile.reading import LoadedJob
+from setupcheck.jobfile.setups import Head, Job, Setup
+from setupcheck.quantities.device_record import DeviceRecord, Series
+from setupcheck.quantities.dividing import typical_errors
+from setupcheck.quantities.route import machine_of
+from setupcheck.quantities.typical import own_name
+from setupcheck.record import record
+
+OF_KEY: Mapping[str, tuple[str, ...]] = {
+    "runout": ("runout",),
+    "fit_error": ("runout",),
+    "face_runout": ("face_runout",),
+    "axis_runout": ("axis",),
+    "error": ("position", "touch", "reading"),
+    "depth_error": ("position", "touch", "reading"),
+}
+"""What an error entry that names a device may take from its record, first found. Source: as typical values are taken."""
+
+M = TypeVar("M", bound=BaseModel)
+
+
+@record
+class Use:
+    """A series of the record that the job names: the path it is for, and whether its limit was taken there."""
+
+    path: str
+    series: Series
+    taken: bool
+
+
+@record(eq=False)
+class RecordUse:
+    """The record a job was judged with, and where the job names what stands in it."""
+
+    record: DeviceRecord
+    uses: tuple[Use, ...]
+
+
+def with_record(loaded: LoadedJob, found: DeviceRecord) -> tuple[LoadedJob, RecordUse]:
+    """The job with the record's limits put where it names a device, or a machine, and states no value of its own.
+
+    A device is looked up by its own name (`four-jaw-A`); tilt, division and axis by the name of the machine, else by the way
+    (`scale`, `hole-circle`); heat and cold by what makes or reads them.  A thin record, or one all alike, gives nothing and
+    the typical value stays.  What is measured or stated in the job stays as it is.
+    """
+    filling = _Filling(loaded, found)
+    job = filling.job()
+    own = {**loaded.own, **filling.own}
+    return replace(loaded, job=job, own=own), RecordUse(found, tuple(filling.uses))
+
+
+class _Filling:
+    """One pass over a job; `own` and `uses` grow on the way."""
+
+    def __init__(self, loaded: LoadedJob, found: DeviceRecord) -> None:
+        self.loaded = loaded
+        self.record = found
+        self.own: dict[str, str] = {}
+        self.uses: list[Use] = []
+
+    def job(self) -> Job:
+        """The filled job."""
+        job = self.loaded.job
+        new = {name: self._within(getattr(job, name), name) for name in job.model_fields_set - {"setups", "machines"}}
+        machines = {
+            name: _changed(machine, dict(self._entries(machine, f"machines.{name}")))
+            for name, machine in job.machines.items()
+        }
+        setups = tuple(self._setup(setup, machines) for setup in job.setups)
+        return _changed(job, {**new, "machines": machines, "setups": setups})
+
+    def take(self, path: str, names: tuple[str | None, ...], whats: tuple[str, ...]) -> float | None:
+        """The limit for an entry, by the first of the names and whats that the record keeps."""
+        series = next((s for name in names for what in whats if (s := self.record.of(name, what)) is not None), None)
+        if series is None:
+            return None
+        limit = series.limit
+        self.uses.append(Use(path, series, limit is not None))
+        if limit is not None:
+            self.own[path] = own_name(series.name, len(series.entries))
+        return limit
+
+    def _within(self, node: object, path: str) -> object:
+        """The node with every error entry below it that names a device and no value."""
+        if isinstance(node, Deviation):
+            whats = OF_KEY.get(path.rpartition(".")[2], ())
+            if node.device is None or node.measured is not None or node.at_most is not None or not whats:
+                return node
+            limit = self.take(path, (node.device,), whats)
+            return node if limit is None else _changed(node, {"at_most": limit})
+        if isinstance(node, BaseModel):
+            return _changed(node, dict(self._entries(node, path)))
+        if isinstance(node, Mapping):
+            return {key: self._within(entry, f"{path}.{key}") for key, entry in node.items()}
+        if isinstance(node, tuple):
+            return tuple(self._within(entry, f"{path}[{number}]") for number, entry in enumerate(node, 1))
+        return node
+
+    def _entries(self, node: BaseModel, path: str) -> Iterator[tuple[str, object]]:
+        for name, field in type(node).model_fields.items():
+            if name in node.model_fields_set:
+                before = getattr(node, name)
+                after = self._within(before, f"{path}.{field.alias or name}")
+                if after is not before:
+                    yield name, after
+
+    def _setup(self, setup: Setup, machines: dict[str, Machine]) -> Setup:
+        path = f"setups.{setup.op}"
+        filled = _changed(setup, dict(self._entries(setup, path)))
+        self._axis(setup, machines)
+        new: dict[str, object] = {}
+        if filled.head is not None:
+            new["head"] = self._head(filled.head, setup.machine, path)
+        if filled.divide is not None:
+            new["divide"] = self._divide(filled, path)
+        if filled.join is not None and filled.join.heat is not None:
+            heat, where = filled.join.heat, f"{path}.join.heat"
+            errors = {
+                key: self.take(f"{where}.{key}", (by,), ("temperature_error",))
+                for key, by in (
+                    ("oven_error", heat.read_by if heat.read_by is not None else heat.by),
+                    ("cold_error", heat.cold_by),
+                )
+                if getattr(heat, key) is None
+            }
+            new["join"] = _changed(filled.join, {"heat": _changed(heat, _those(errors))})
+        return _changed(filled, new)
+
+    def _axis(self, setup: Setup, machines: dict[str, Machine]) -> None:
+        """The axis of a machine that states none, once for all its setups; also of one that is called by its kind."""
+        name, machine = machine_of(self.loaded, setup)
+        if name is None or machine is None or machine.axis_runout is not None or setup.join is not None:
+            return
+        path = f"machines.{name}.axis_runout"
+        if path in self.own or any(use.path == path for use in self.uses):
+            return
+        limit = self.take(path, (name,), ("axis",))
+        if limit is not None:
+            given = Deviation.model_construct(at_most=limit, device=name)
+            machines[name] = _changed(machines.get(name, machine), {"axis_runout": given})
+
+    def _head(self, head: Head, machine: str | None, path: str) -> Head:
+        if head.uncertainty is not None:
+            return head
+        return _changed(
+            head, _those({"uncertainty": self.take(f"{path}.head.uncertainty", (machine, head.by), ("tilt",))})
+        )
+
+    def _divide(self, setup: Setup, path: str) -> Divide | None:
+        """The division with what the record keeps of it; what it does not keep takes its typical value beside it."""
+        divide = setup.divide
+        if divide is None or divide.wheel is not None or divide.setting is not None:
+            return divide
+        if not _divides(self.loaded, setup):
+            return divide
+        keys = {"wheel.once_per_turn": "once_per_turn", "setting": "setting"}
+        if divide.worm is None:
+            keys["worm.once_per_crank"] = "once_per_crank"
+        names = (setup.machine, divide.by)
+        errors = _those({key: self.take(f"{path}.divide.{key}", names, (what,)) for key, what in keys.items()})
+        if not errors:
+            return divide
+        for key, row in typical_errors(divide).items():
+            if key not in errors:
+                errors[key] = row.value
+                self.own[f"{path}.divide.{key}"] = row.name
+        new: dict[str, object] = {}
+        for key, value in errors.items():
+            group, _, entry = key.rpartition(".")
+            new[group or entry] = Waves.model_construct(**{entry: value}) if group else value  # type: ignore[arg-type]
+        return _changed(divide, new)
+
+
+def _divides(loaded: LoadedJob, setup: Setup) -> bool:
+    """Whether a setup cuts more than one tooth or hole: a single place has no error of division."""
+    refs = (loaded.ref(name, setup.part) for name in setup.cut)
+    return any(getattr(loaded.job.parts[ref.part].surfaces[ref.surface], "count", 1) > 1 for ref in refs)
+
+
+def _those(found: Mapping[str, float | None]) -> dict[str, object]:
+    return {key: value for key, value in found.items() if value is not None}
+
+
+def _changed(node: M, new: Mapping[str, object]) -> M:
+    """The record with other entries; it still knows which ones the file wrote. The same one where nothing changes."""
+    if all(getattr(node, key) is value for key, value in new.items()):
+        return node
+    copy = node.model_copy(update=dict(new))
+    copy.model_fields_set.intersection_update(node.model_fields_set)
+    return copy
