@@ -23,7 +23,7 @@ MAY_IMPORT: dict[str, set[str]] = {
     "ledger": set(),
     "physics": set(),
     "worm": set(),
-    "division": set(),
+    "division": {"errors", "notation", "physics"},
     "jobfile": {"errors", "notation", "yamlfile"},
     "quantities": {"errors", "notation", "yamlfile", "shipped", "ledger", "physics", "worm", "division", "jobfile"},
     "rulebook": {"errors", "notation", "yamlfile"},
