@@ -18,7 +18,7 @@ plugins.leave_out()
 
 import typer  # noqa: E402
 
-from setupcheck.cli import contact, insert, review, rules, working  # noqa: E402
+from setupcheck.cli import contact, insert, readings, review, rules, working  # noqa: E402
 from setupcheck.errors import SetupcheckError  # noqa: E402
 
 app = typer.Typer(
@@ -34,6 +34,7 @@ app.command("review")(review.command)
 app.command("working")(working.command)
 app.command("contact")(contact.command)
 app.command("insert")(insert.command)
+app.command("readings")(readings.command)
 app.command("rules")(rules.command)
 
 

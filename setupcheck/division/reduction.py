@@ -17,7 +17,7 @@ from setupcheck.division.eccentric import Wheel, eccentric
 from setupcheck.division.fit import SURE, Fit, Scatter, fitted, scatter_of
 from setupcheck.division.points import Points, Prepared, gap_of, prepare, without
 from setupcheck.division.readings import Readings
-from setupcheck.division.repeatability import repeatability
+from setupcheck.division.repeatability import repeatability, sighting
 from setupcheck.division.results import Flag, Interval, Reduced, Unseen, Wave
 from setupcheck.errors import SetupcheckError
 from setupcheck.record import record
@@ -93,7 +93,7 @@ def reduce(
     off = eccentric(found.fit, found.spread, found.nu, waves, wheel, turned=turned, points=found.points)
     return Reduced(
         verdict="open" if reasons or not waves or waves[0].open else "told",
-        reasons=tuple(dict.fromkeys([*reasons, *(w.open for w in waves[:1] if w.open), *_nothing(found, waves)])),
+        reasons=tuple(dict.fromkeys([*reasons, *_first(waves), *_nothing(found, waves)])),
         warnings=tuple(warnings(unseen)),
         limits=(*ready.limits, *_limits(found)),
         rows=len(readings),
@@ -114,6 +114,7 @@ def reduce(
         no_reversal=_no_reversal(found.plan),
         repeatability=repeatability(ready.points, _zeros(found) if readings.how == "reading" else None),
         collimation=ready.collimation,
+        sighting=sighting(ready.points) if ready.collimation is not None else None,
         flags=tuple(_flags(found, flagged)),
         without=other,
         whole=ready.whole,
@@ -200,6 +201,11 @@ def _reasons(ready: Prepared, found: _Found, steps: Sequence[doubts.Step]) -> tu
     return tuple(said)
 
 
+def _first(waves: Sequence[Wave]) -> list[str]:
+    """Why the first wave, which is asked for most, is no answer."""
+    return [w.open for w in waves[:1] if w.open]
+
+
 def _nothing(found: _Found, waves: Sequence[Wave]) -> list[str]:
     if waves:
         return []
@@ -224,7 +230,7 @@ def _waves(found: _Found, names: dict[float, str], turned: bool, reasons: Sequen
         nu = found.nu if found.spread > 0.0 else 1.0
         because = reasons[0] if reasons else ""
         if term.harmonic in rival:
-            because = because or f"{names[term.harmonic]}: these stations cannot tell it from {rival[term.harmonic]}"
+            because = because or f"these stations cannot tell it from {rival[term.harmonic]}"
         length = length_of(vector, covariance, nu, also=also)
         made.append(
             Wave(

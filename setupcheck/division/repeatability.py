@@ -5,6 +5,7 @@ from __future__ import annotations
 import numpy as np
 from numpy.typing import NDArray
 
+from setupcheck.division.faces import spread_of_sets
 from setupcheck.division.points import Points
 from setupcheck.record import record
 
@@ -96,3 +97,19 @@ def repeatability(points: Points, zeros: Reals | None = None) -> Repeatability |
     return figures(
         (up[there], s_up[there]), (down[there], s_down[there]), int(min(n_up[there].min(), n_down[there].min()))
     )
+
+
+def sighting(points: Points) -> tuple[float, int] | None:
+    """(standard deviation of a direction, degrees of freedom) from runs of one direction over the same stations.
+
+    None where fewer than two runs have more than one station in common.  Source: as `spread_of_sets`.
+    """
+    for direction in np.unique(points.direction)[::-1]:
+        mine = points.direction == direction
+        table: dict[int, dict[float, float]] = {}
+        for run, theta, y in zip(points.run[mine], np.round(points.theta[mine], 8), points.y[mine], strict=True):
+            table.setdefault(int(run), {}).setdefault(float(theta), float(y))
+        same = sorted(set.intersection(*(set(row) for row in table.values())))
+        if len(table) > 1 and len(same) > 1:
+            return spread_of_sets(np.array([[row[theta] for theta in same] for row in table.values()]))
+    return None

@@ -104,6 +104,7 @@ class Reduced:
     drift       over the whole test [rad];  closure  last less first reading of the first station, None where not repeated
     reversal    forward less reverse [rad], None with why in `no_reversal`
     worm        the wave of the own worm, None where it is not seen
+    sighting    standard deviation of a direction sighted once in both faces [rad], degrees of freedom; None with one face
     without     the waves fitted without the flagged readings
     repaired    the numbers hold as if what `whole` and `steps` name were put right
     """
@@ -129,6 +130,7 @@ class Reduced:
     no_reversal: str
     repeatability: Repeatability | str
     collimation: Collimation | None
+    sighting: tuple[float, int] | None
     flags: tuple[Flag, ...]
     without: tuple[Wave, ...]
     whole: tuple[Whole, ...]

@@ -28,7 +28,7 @@ MAY_IMPORT: dict[str, set[str]] = {
     "quantities": {"errors", "notation", "yamlfile", "shipped", "ledger", "physics", "worm", "division", "jobfile"},
     "rulebook": {"errors", "notation", "yamlfile"},
     "flow": {"jobfile", "quantities", "rulebook", "shipped"},
-    "report": {"errors", "notation", "ledger", "jobfile", "quantities", "rulebook", "flow", ""},
+    "report": {"errors", "notation", "ledger", "division", "jobfile", "quantities", "rulebook", "flow", ""},
     "cli": {"errors", "flow", "report", "rulebook", ""},
     "": {"errors", "flow"},
     "__main__": {"cli"},
