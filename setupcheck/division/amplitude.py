@@ -24,7 +24,7 @@ Reals = NDArray[np.floating]
 LEVEL = 0.95
 _Z = 1.959963984540054
 """97.5 % point of the normal distribution; textbook."""
-_NODES, _WEIGHTS = np.polynomial.hermite_e.hermegauss(41)
+_NODES, _WEIGHTS = np.polynomial.hermite_e.hermegauss(15)
 _WEIGHTS = _WEIGHTS / _WEIGHTS.sum()
 
 
@@ -63,7 +63,8 @@ def length_of(vector: Reals, covariance: Reals, nu: float, *, also: float = 0.0)
     across = np.array([-along[1], along[0]])
     wide = covariance * (t / _Z) ** 2
     s_along, s_across = (math.sqrt(max(float(v @ wide @ v), 0.0)) for v in (along, across))
-    low, high = _ends(value, s_along, s_across)
+    turned = min((s_across / value) ** 2, 1.0) if value > 0.0 else 1.0  # `along` is only as sure as the direction read
+    low, high = _ends(value, math.sqrt(s_along**2 * (1.0 - turned) + s_across**2 * turned), s_across)
     low, high = max(float(low) - also, 0.0), float(high) + also
     direction = float(np.arctan2(vector[1], vector[0])) % math.tau
     within = _within(vector, covariance, t) if low > 0.0 else None
@@ -76,32 +77,33 @@ def _ends(value: float, s_along: float, s_across: float) -> tuple[float, float]:
     """Lengths for which a longer one than `value` would be read 2.5 % of the time, and a shorter one."""
     if max(s_along, s_across) <= 0.0:
         return value, value
-    side = _NODES * s_across
-    chord = np.sqrt(np.maximum(value * value - side * side, 0.0))
-    inside = np.abs(side) < value
+    chords = [
+        (float(weight), math.sqrt(value * value - float(node) ** 2 * s_across**2))
+        for node, weight in zip(_NODES, _WEIGHTS, strict=True)
+        if abs(float(node)) * s_across < value
+    ]
 
     def below(length: float) -> float:
         """Chance that the length read is below `value` when the true one is `length`."""
         if s_along <= 0.0:
-            return float(_WEIGHTS[inside & (chord > length)].sum())
-        high, low = (_normal((x - length) / s_along) for x in (chord, -chord))
-        return float((_WEIGHTS * np.where(inside, high - low, 0.0)).sum())
+            return sum(weight for weight, chord in chords if chord > length)
+        root = s_along * math.sqrt(2.0)
+        return 0.5 * sum(
+            weight * (math.erfc((length - chord) / root) - math.erfc((length + chord) / root))
+            for weight, chord in chords
+        )
 
     top = value + 10.0 * (s_along + s_across)
-    high = _root(lambda length: below(length) - 0.025, value * 0.0, top)
+    high = _root(lambda length: below(length) - 0.025, 0.0, top)
     low = 0.0 if below(0.0) <= 0.975 else _root(lambda length: below(length) - 0.975, 0.0, top)
     return low, max(high, low)
-
-
-def _normal(x: Reals) -> Reals:
-    return np.array([0.5 * math.erfc(-float(v) / math.sqrt(2.0)) for v in x])
 
 
 def _root(falls: Callable[[float], float], low: float, high: float) -> float:
     """Where a falling function passes zero; `low` where it is below zero there already."""
     if falls(low) <= 0.0:
         return low
-    for _ in range(60):
+    for _ in range(36):
         middle = 0.5 * (low + high)
         low, high = (middle, high) if falls(middle) > 0.0 else (low, middle)
     return 0.5 * (low + high)

@@ -84,6 +84,14 @@ def _number(text: str, called: str, example: str) -> float:
     raise BadCell(f"{quoted(text)} is not {called}. Write it as in {example}")
 
 
+def _is_number(text: str) -> bool:
+    try:
+        float(text)
+    except ValueError:
+        return False
+    return True
+
+
 def _angle(unit: str) -> Cell:
     factor = UNITS[unit]
     example = {"deg": "130.25", "gon": "144.7222", "arcsec": "-4.5"}[unit]
@@ -103,7 +111,7 @@ def _angle(unit: str) -> Cell:
 
 def _spelt(text: str, unit: str, called: str, example: str) -> float:
     """A cell that carries a unit of its own, which must be the column's; anything else is told."""
-    if re.fullmatch(r"[^A-Za-z°'\"]*", text) or text[:1] in ("=", "@"):
+    if re.fullmatch(r"[^A-Za-z°'\"]*", text) or text[:1] in ("=", "@") or _is_number(text):
         value = _number(text, called, example)
         raise BadCell(f"{quoted(text)} is {abs(value):.6g}, more than a hundred turns. Check the number and its unit")
     try:

@@ -103,6 +103,14 @@ class Sums:
         whole = np.sqrt(np.diag(self.products)[at].mean()) or 1.0
         return np.asarray(np.linalg.eigvalsh(self.left(terms, at) / whole**2))
 
+    def told(self, terms: Sequence[Term], of: Term) -> float:
+        """Share of what the zeros of the runs leave of a single column that the other terms leave of it."""
+        at = self.at([of])
+        alone = float(self.left([t for t in terms if t.kind == "zero"], at)[0, 0])
+        if alone <= 1e-9 * float(self.products[at[0], at[0]]):
+            return 0.0
+        return float(self.left(terms, at)[0, 0]) / alone
+
     def taken(self, terms: Sequence[Term], of: Term) -> Reals:
         """How much of each fitted column a unit of each column of `of` is taken for, shape (columns of terms, width)."""
         base = self.at(terms)
@@ -182,19 +190,19 @@ def design(points: Points, asked: Sequence[float]) -> Design:
     both = bool((points.direction == 1).any() and (points.direction == -1).any())
     turned = "none"
     if both and said.any():
-        turned = "fitted" if sums.shares(chosen, reversal)[0] > RESOLVED else "apart"
+        turned = "fitted" if sums.told(chosen, reversal) > RESOLVED else "apart"
         if turned == "fitted":
             chosen.append(reversal)
     unknowns = 1
-    if len(np.unique(points.t)) > 1 and sums.shares(chosen, drift)[0] > RESOLVED:
+    if len(np.unique(points.t)) > 1 and sums.told(chosen, drift) > RESOLVED:
         chosen.append(drift)
-    if arc and sums.shares(chosen, slope)[0] > RESOLVED:
+    if arc and sums.told(chosen, slope) > RESOLVED:
         chosen.append(slope)
         unknowns += 1
     repeated = _repeated(points)
     left_out: list[tuple[Term, str]] = []
     for place, wave in enumerate(waves):
-        spare = SPARE if place > 0 and not arc else 0
+        spare = 0 if arc else SPARE if place > 0 else 1
         if arc and wave.harmonic < 5.0:
             left_out.append((wave, "arc"))
         elif _invisible(sums, runs, wave):

@@ -20,8 +20,9 @@ from setupcheck.record import record
 
 Reals = NDArray[np.floating]
 
-OUTLIER = 3.5 * 1.4826
-"""Residuals beyond so many medians of their sizes are flagged. Common practice, from memory (a robust 3.5 sigma)."""
+OUTLIER = 3.5
+"""Residuals beyond so many robust standard deviations (1.4826 medians of their sizes) are flagged. Common practice, from
+memory. Among more than a hundred readings the bound grows as the largest of so many does, sqrt(2 ln 5n); ours."""
 STEP_CHANCE = 0.005
 """Chance of calling a step where there is none, over all places it might stand at."""
 MOST_PLACES = 2_000
@@ -47,7 +48,8 @@ def outliers(fit: Fit) -> NDArray[np.int64]:
     if middle <= 0.0:
         return np.zeros(0, dtype=np.int64)
     inflate = math.sqrt(len(off) / max(fit.nu, 1))  # residuals of few degrees of freedom are too small
-    return np.flatnonzero(off > OUTLIER * middle * inflate)
+    bound = max(OUTLIER, math.sqrt(2.0 * math.log(5.0 * len(off))))
+    return np.flatnonzero(off > bound * 1.4826 * middle * inflate)
 
 
 def steps(points: Points, fit: Fit) -> tuple[Step, ...]:
@@ -136,9 +138,9 @@ def follows(residuals: Reals, nu: int) -> float:
 
 def bend_shows(sums: Sums, terms: Sequence[Term], bend: Term, scatter: Scatter) -> tuple[float, float]:
     """(share of the bend that the terms leave, how many of its own standard deviations it stands at)."""
-    share = float(sums.shares(terms, bend)[0])
+    share = sums.told(terms, bend)
     at = [*sums.at([bend]), sums.products.shape[0] - 1]
     left = sums.left(terms, at)
-    if share <= 0.0 or left[0, 0] <= 0.0:
+    if share <= 0.0 or left[0, 0] <= 0.0 or not scatter.used > 0.0:
         return 0.0, 0.0
     return share, abs(float(left[0, 1])) / math.sqrt(float(left[0, 0]) * scatter.used)

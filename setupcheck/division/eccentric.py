@@ -101,9 +101,9 @@ def _looks(fit: Fit, spread: float, nu: float, alpha: float) -> str:
     expected = base @ mean
     own = base @ (fit.covariance(Term("wave", 1.0)) * spread) @ base.T
     far = [_chance(seen - expected, covariance + own, nu), _chance(seen, covariance, nu)]
-    if far[0] > 0.05 >= far[1]:
+    if far[0] > 0.01 >= far[1]:
         return "eccentric"
-    if far[1] > 0.05 >= far[0]:
+    if far[1] > 0.01 >= far[0]:
         return "division"
     return "neither" if max(far) <= 0.01 else "undecided"
 

@@ -10,7 +10,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from setupcheck.division import doubts
-from setupcheck.division.amplitude import length_of, t_at
+from setupcheck.division.amplitude import Length, length_of, t_at
 from setupcheck.division.columns import ARCSEC
 from setupcheck.division.design import Design, Term, columns, design
 from setupcheck.division.eccentric import Wheel, eccentric
@@ -33,6 +33,10 @@ NO_SAG = (
 DISCONNECTED = (
     "no station was read twice, so drift of the instrument cannot be told from division: repeat the first station"
 )
+
+
+NO_SCATTER = "the readings leave no scatter at all, as those of no instrument do: copied, or rounded too coarsely"
+NO_SPARE = "there are no more readings than unknowns, so nothing says how well they hold: read more, or repeat"
 
 
 @record(eq=False)
@@ -190,10 +194,8 @@ def _reasons(ready: Prepared, found: _Found, steps: Sequence[doubts.Step]) -> tu
         else:
             where = math.degrees(step.theta) % 360.0
             said.append(f"from the station at {where:.2f} deg on round the circle everything stands {size} off")
-    if found.fit.nu < 1 or not found.scatter.used > 0.0 or found.scatter.nu < 1:
-        said.append(
-            "there are no more readings than unknowns, so nothing says how well they hold: read more, or repeat"
-        )
+    if not found.scatter.used > 0.0 or found.scatter.nu < 1:
+        said.append(NO_SCATTER if found.fit.nu >= 1 else NO_SPARE)
     if not found.plan.repeated and not found.plan.arc:
         said.append(DISCONNECTED)
     elif found.sag > 0.0 and not found.plan.arc:
@@ -222,16 +224,19 @@ def _waves(found: _Found, names: dict[float, str], turned: bool, reasons: Sequen
         if term.kind != "wave":
             continue
         vector = found.fit.vector(term)
-        covariance = found.fit.covariance(term) * (found.spread if found.spread > 0.0 else 0.0)
+        sure = found.spread > 0.0
+        covariance = found.fit.covariance(term) * (found.spread if sure else 0.0)
         if turned:  # delta(theta) = -d(-theta): what was turned too far shows a place that stands too far back
             vector = vector * (-1.0, 1.0)
             covariance = covariance * np.array([[1.0, -1.0], [-1.0, 1.0]])
         also = _sag_on(found, term)
-        nu = found.nu if found.spread > 0.0 else 1.0
+        nu = found.nu if sure else 1.0
         because = reasons[0] if reasons else ""
         if term.harmonic in rival:
             because = because or f"these stations cannot tell it from {rival[term.harmonic]}"
         length = length_of(vector, covariance, nu, also=also)
+        if not sure:
+            length = Length(length.value, 0.0, math.inf, length.direction, None)
         made.append(
             Wave(
                 names[term.harmonic], term.harmonic, float(vector[0]), float(vector[1]),

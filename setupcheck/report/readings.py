@@ -72,7 +72,9 @@ def _answers(found: ReadBack) -> Iterator[str]:
     if e is not None:
         told = e.amount.low > 0.0
         text = (
-            f"eccentric by {_fine(found, e.amount)}" if told else f"eccentric by less than {_one(found, e.amount.high)}"
+            f"eccentric by {_fine(found, e.amount)}"
+            if told or math.isinf(e.amount.high)
+            else f"eccentric by less than {_one(found, e.amount.high)}"
         )
         if told and e.within is not None:
             text += f", high at tooth {e.tooth} ({_deg(e.direction)} ±{fixed(math.degrees(e.within), 1)})"
@@ -93,7 +95,9 @@ def _answers(found: ReadBack) -> Iterator[str]:
 
 def _wave(found: ReadBack, wave: Wave) -> str:
     length = wave.length
-    if length.low <= 0.0:
+    if math.isinf(length.high):
+        text = f"{wave.name}: {_sec(length.value)}, without an interval"
+    elif length.low <= 0.0:
         text = f"{wave.name}: not told from nothing, less than {_sec(length.high)}"
     else:
         text = f"{wave.name}: {_sec(length.value)} ({_sec(length.low)} to {_sec(length.high)})"
@@ -101,7 +105,7 @@ def _wave(found: ReadBack, wave: Wave) -> str:
         if found.reduced.worm is not None and wave.harmonic == found.reduced.worm.harmonic:
             along = wave.length.value * found.of.radius
             turn = "" if length.within is None else f" ±{fixed(math.degrees(length.within), 0)}"
-            most = f"{fixed(math.degrees(length.direction), 0)} deg{turn} of its turn"
+            most = f"{round(math.degrees(length.direction)) % 360} deg{turn} of its turn"
             text += f", {_one(found, along)} along the worm, most at {most}"
         elif within:
             text += f", most at {_deg(wave.highest)}{within}" + (" and so on" if wave.harmonic > 1.0 else "")
@@ -211,7 +215,7 @@ def _span(x: Interval) -> str:
 
 
 def _deg(value: float) -> str:
-    return f"{fixed(math.degrees(value) % 360.0, 1)} deg"
+    return f"{fixed(round(math.degrees(value), 1) % 360.0, 1)} deg"
 
 
 def _size(found: ReadBack, mm: float) -> str:
@@ -223,6 +227,8 @@ def _one(found: ReadBack, mm: float) -> str:
 
 
 def _fine(found: ReadBack, x: Interval) -> str:
+    if math.isinf(x.high):
+        return f"{_one(found, x.value)}, without an interval"
     return f"{_one(found, x.value)} ({_one(found, x.low)} to {_one(found, x.high)})"
 
 
@@ -294,8 +300,9 @@ def _wave_data(w: Wave) -> dict[str, object]:
     }
 
 
-def _interval(x: Interval, factor: float) -> dict[str, float]:
-    return {"value": _number(x.value * factor), "low": _number(x.low * factor), "high": _number(x.high * factor)}
+def _interval(x: Interval, factor: float) -> dict[str, float | None]:
+    high = _number(x.high * factor) if math.isfinite(x.high) else None
+    return {"value": _number(x.value * factor), "low": _number(x.low * factor), "high": high}
 
 
 def _degrees(x: float | None) -> float | None:

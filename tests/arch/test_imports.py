@@ -27,7 +27,7 @@ MAY_IMPORT: dict[str, set[str]] = {
     "jobfile": {"errors", "notation", "yamlfile"},
     "quantities": {"errors", "notation", "yamlfile", "shipped", "ledger", "physics", "worm", "division", "jobfile"},
     "rulebook": {"errors", "notation", "yamlfile"},
-    "flow": {"jobfile", "quantities", "rulebook", "shipped"},
+    "flow": {"division", "jobfile", "quantities", "rulebook", "shipped"},
     "report": {"errors", "notation", "ledger", "division", "jobfile", "quantities", "rulebook", "flow", ""},
     "cli": {"errors", "flow", "report", "rulebook", ""},
     "": {"errors", "flow"},

@@ -20,11 +20,11 @@ import numpy as np
 import pytest
 from scipy import stats
 
-from setupcheck.division.design import Term, columns
+from setupcheck.division.design import Term, columns, sums_of
 from setupcheck.division.faces import acceptance, both_faces, spread_of_sets
 from setupcheck.division.fit import fitted
 from setupcheck.division.pitches import pitch_from_differences
-from setupcheck.division.points import Points
+from setupcheck.division.points import Points, prepare
 from setupcheck.division.readings import Readings, read_test
 from setupcheck.division.reduction import _found, reduce
 from setupcheck.division.repeatability import Repeatability
@@ -63,14 +63,15 @@ def test_the_figures_of_positioning(tmp_path: Path) -> None:
 
 
 def test_the_harmonics_of_the_means_of_both_directions(tmp_path: Path) -> None:
-    # eight equal steps, every one read as often: the joint fit and the sums of a Fourier series are the same numbers
-    reduced = told(tmp_path, positioning())[1]
-    first, second = reduced.waves[:2]
-    assert 12.086 == pytest.approx(first.length.value / ARCSEC, abs=5e-4)
-    assert 30.36 == pytest.approx(math.degrees(first.highest), abs=5e-3)
-    assert 4.133 == pytest.approx(second.length.value / ARCSEC, abs=5e-4)
-    assert reduced.reversal is not None
-    assert 9.875 == pytest.approx(reduced.reversal.value / ARCSEC)
+    # eight equal steps, every one read as often: without drift the joint fit and the sums of a Fourier series are the same
+    ready = prepare(told(tmp_path, positioning())[0], count=72, worm_ratio=None, start=0.0, turn=1)
+    terms = [*(Term("zero", float(run)) for run in range(5)), Term("reversal"), Term("wave", 1.0), Term("wave", 2.0)]
+    fit = fitted(ready.points, sums_of(ready.points, terms), terms)
+    first, second = fit.vector(Term("wave", 1.0)) / ARCSEC, fit.vector(Term("wave", 2.0)) / ARCSEC
+    assert 12.086 == pytest.approx(float(np.hypot(*first)), abs=5e-4)
+    assert 30.36 == pytest.approx(math.degrees(math.atan2(first[1], first[0])), abs=5e-3)
+    assert 4.133 == pytest.approx(float(np.hypot(*second)), abs=5e-4)
+    assert 9.875 == pytest.approx(float(fit.vector(Term("reversal"))[0]) / ARCSEC)
 
 
 def test_fewer_than_two_runs_each_way_have_no_figures_of_positioning(tmp_path: Path) -> None:
@@ -106,7 +107,11 @@ def test_both_faces_give_directions_and_collimation() -> None:
 
 def test_a_file_with_both_faces_says_the_same(tmp_path: Path) -> None:
     # the three made-up stations and two more, so that there is something left over
-    faces = [*zip(("0", "45", "120"), LEFT, RIGHT, strict=True), ("200", "200 0 10", "20 0 20"), ("300", "300 0 10", "120 0 22")]
+    faces = [
+        *zip(("0", "45", "120"), LEFT, RIGHT, strict=True),
+        ("200", "200 0 10", "20 0 20"),
+        ("300", "300 0 10", "120 0 22"),
+    ]
     lines = ["angle_deg;reading_dms;face"]
     for station, left, right in faces:
         lines += [f"{station};{left};left", f"{station};{right};right"]
@@ -146,7 +151,9 @@ def test_a_wave_inside_one_crank_turn_is_fitted_together_with_its_slope(tmp_path
     y = crank(at)
     line = np.polyval(np.polyfit(at, y, 1), at)
     transformed = abs(np.exp(-1j * 90.0 * at) @ (y - line)) / 4.0
-    text = "angle_deg,deviation_arcsec\n" + "".join(f"{math.degrees(a):.4f},{v:.9f}\n" for a, v in zip(at, y, strict=True))
+    text = "angle_deg,deviation_arcsec\n" + "".join(
+        f"{math.degrees(a):.4f},{v:.9f}\n" for a, v in zip(at, y, strict=True)
+    )
     reduced = told(tmp_path, text, worm_ratio=90.0)[1]
     assert abs(transformed - 4.0) > 0.8  # detrended first it comes out a quarter short
     assert reduced.worm is not None

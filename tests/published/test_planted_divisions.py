@@ -86,19 +86,23 @@ def test_what_was_planted_lies_inside_what_is_told(
         opened += found.verdict == "open"
         yes += held(shop, found)
     shares = {what: n / DRAWS for what, n in yes.items()}
-    wide = {"drift", "reversal"} if "teeth" in more else set()  # the teeth's own errors cancel in these, and are counted
+    wide = (
+        {"drift", "reversal"} if "teeth" in more else set()
+    )  # the teeth's own errors cancel in these, and are counted
     assert {} == {what: share for what, share in shares.items() if not FEWEST <= share <= MOST and what not in wide}
     assert all(shares[what] >= FEWEST for what in wide)
     assert opened <= 0.08 * DRAWS  # files without fault are not refused
 
 
 def test_a_ring_without_eccentricity_is_told_to_have_little(tmp_path: Path) -> None:
+    nothing = 0
     for seed in range(SLIPS):
-        found = read(tmp_path, twelve(Shop(seed, e=0.0, second=0.0, worm=0.0)))
-        assert found.eccentric is not None
-        assert found.eccentric.amount.high < 0.0007
-    assert found.eccentric.amount.low == 0.0
-    assert found.eccentric.within is None
+        found = read(tmp_path, twelve(Shop(seed, e=0.0, second=0.0, worm=0.0))).eccentric
+        assert found is not None
+        assert found.amount.high < 0.0007
+        nothing += found.amount.low == 0.0
+        assert (found.within is None) == (found.amount.low == 0.0) or found.within is None
+    assert nothing >= 0.85 * SLIPS
 
 
 SLIP = {
