@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping
+from collections.abc import Callable, Mapping
 from dataclasses import field
 from functools import cache
 from pathlib import Path
@@ -33,6 +33,8 @@ from setupcheck.rulebook import (
 from setupcheck.shipped import shipped
 
 if TYPE_CHECKING:
+    from setupcheck.division.results import Reduced
+    from setupcheck.quantities.division_test import Tested
     from setupcheck.quantities.own_values import RecordUse
     from setupcheck.quantities.remedies import Remedy
     from setupcheck.rulebook.house import House
@@ -127,6 +129,39 @@ def with_devices(loaded: LoadedJob, path: str | Path) -> tuple[LoadedJob, Record
     from setupcheck.quantities.own_values import with_record
 
     return with_record(loaded, read_record(path))
+
+
+@record(eq=False)
+class ReadBack:
+    """A division test read back: the job, the teeth it is of, what it says, and the name of its file."""
+
+    loaded: LoadedJob
+    of: Tested
+    reduced: Reduced
+    file: str
+
+
+def read_back(
+    job: LoadedJob | str | Path,
+    readings: str | Path,
+    *,
+    of: str | None = None,
+    turns_with_work: bool = False,
+    progress: Callable[[int], None] | None = None,
+) -> ReadBack:
+    """Reduce the readings of a division test with what the job says of the teeth.
+
+    of               `part.surface` of the teeth, where the job has more than one;  progress  bytes of the file read so far
+    turns_with_work  stations are turns of the work, as for an instrument that rides on it
+    Raises: JobError; SetupcheckError for the readings.
+    """
+    from setupcheck.division.readings import read_test
+    from setupcheck.quantities.division_test import reduced, tested
+
+    loaded = job if isinstance(job, LoadedJob) else load_job(job)
+    teeth = tested(walk(loaded), of)
+    found = read_test(readings, progress=progress)
+    return ReadBack(loaded, teeth, reduced(found, teeth, turns_with_work=turns_with_work), found.file)
 
 
 def _house(path: Path, rulebook: RuleBook, book: Book) -> House:

@@ -12,7 +12,7 @@ import math
 import numpy as np
 import pytest
 
-from setupcheck.division.readings import pitch_from_differences
+from setupcheck.division.pitches import pitch_from_differences
 from setupcheck.ledger.teeth import largest_steps, ranges
 
 from .bench import MANY, UM, sampled, stack

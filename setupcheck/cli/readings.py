@@ -1,0 +1,71 @@
+"""`setupcheck readings JOB CSV`: a division test read back."""
+
+# Annotations are evaluated as they stand (no __future__ import): typer would have to compile each of them from its text.
+
+import sys
+from pathlib import Path
+from typing import TYPE_CHECKING, Annotated
+
+import typer
+
+if TYPE_CHECKING:
+    from setupcheck.flow import ReadBack
+
+LARGE = 20_000_000
+"""Bytes of a file from which on a bar shows how far it is read. Our choice: some seconds."""
+
+
+def command(
+    job: Annotated[Path | None, typer.Argument(metavar="JOB", help="Job file (YAML).", show_default=False)] = None,
+    readings: Annotated[
+        Path | None, typer.Argument(metavar="CSV", help="Readings of the test.", show_default=False)
+    ] = None,
+    of: Annotated[
+        str | None, typer.Option(help="Teeth or holes, as in wheel.teeth; the mesh's wheel if left out.")
+    ] = None,
+    turns_with_work: Annotated[
+        bool, typer.Option("--turns-with-work", help="Stations are turns of the work: the instrument rides on it.")
+    ] = False,
+    as_json: Annotated[bool, typer.Option("--json", help="Print JSON instead of text.")] = False,
+    template: Annotated[bool, typer.Option("--template", help="Print a CSV to start from and stop.")] = False,
+) -> None:
+    """Reduce the readings of a division test: eccentricity, worm, backlash, scatter. Exit 0 told, 1 open, 2 unreadable.
+
+    Example: setupcheck readings jobs/rotator-worm-wheel.yaml test.csv
+    """
+    if template:
+        from setupcheck.report.readings import template as text
+
+        sys.stdout.write(text())
+        return
+    if job is None or readings is None:
+        raise typer.BadParameter("write the job and its readings, as in: setupcheck readings wheel.yaml test.csv")
+    found = _read(job, readings, of, turns_with_work=turns_with_work)
+    from setupcheck.report.readings import as_json as in_json
+    from setupcheck.report.readings import as_text
+
+    sys.stdout.write(in_json(found) if as_json else as_text(found))
+    raise typer.Exit(0 if found.reduced.verdict == "told" else 1)
+
+
+def _read(job: Path, readings: Path, of: str | None, *, turns_with_work: bool) -> "ReadBack":
+    from setupcheck.flow import read_back
+
+    try:
+        size = readings.stat().st_size
+    except OSError:
+        size = 0
+    if size < LARGE or not sys.stderr.isatty():
+        return read_back(job, readings, of=of, turns_with_work=turns_with_work)
+    from rich.console import Console
+    from rich.progress import Progress
+
+    with Progress(console=Console(stderr=True), transient=True) as bar:
+        task = bar.add_task("reading", total=size)
+        return read_back(
+            job,
+            readings,
+            of=of,
+            turns_with_work=turns_with_work,
+            progress=lambda done: bar.update(task, completed=done),
+        )

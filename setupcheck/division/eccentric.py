@@ -1,0 +1,116 @@
+"""From waves to trade terms: how far the teeth are off their axis and towards which tooth. Angles rad, lengths mm.
+
+Teeth whose axis is off by e towards phi, a worm at a fixed distance:   (as in the ledger, side +1 where the worm pushes on
+the counter-clockwise wall of a gap, which turns the work counter-clockwise)
+
+    one flank    r delta(theta) = (e / cos alpha) sin(phi - theta - side alpha)
+    their mean   r delta(theta) = e sin(phi - theta)
+    side +1 less side -1        = - 2 e tan(alpha) cos(phi - theta)
+
+so the wave of one flank is highest at phi - 90 deg - side alpha, the mean at phi - 90 deg; a wave that comes from the
+dividing alone is the same on both flanks.
+Sources: geometry, derived here; signs held against ledger/teeth.py in the tests.
+"""
+
+from __future__ import annotations
+
+import math
+
+import numpy as np
+from numpy.typing import NDArray
+
+from setupcheck.division.design import Term
+from setupcheck.division.fit import Fit
+from setupcheck.division.points import Points
+from setupcheck.division.results import Eccentric, Interval, Wave
+from setupcheck.physics.student_t import f_above
+from setupcheck.record import record
+
+Reals = NDArray[np.floating]
+
+
+@record
+class Wheel:
+    """count teeth; radius where the worm meets them [mm], pressure_angle transverse [rad], None where not stated.
+
+    start, turn  direction of the first gap [rad] and the sense in which gaps follow, as in the ledger
+    """
+
+    count: int
+    radius: float | None = None
+    pressure_angle: float | None = None
+    start: float = 0.0
+    turn: int = 1
+
+    def tooth(self, direction: float) -> int:
+        """The tooth that stands nearest to a direction: tooth n half a pitch on from gap n."""
+        pitch = math.tau / self.count
+        place = self.turn * (direction - self.start) / pitch + 0.5
+        return (round(place) - 1) % self.count + 1
+
+
+def eccentric(
+    fit: Fit, spread: float, nu: float, waves: tuple[Wave, ...], wheel: Wheel, *, turned: bool, points: Points
+) -> Eccentric | None:
+    """Eccentricity of the teeth from the wave once per turn; None where that is not fitted or the radius is not stated."""
+    wave = next((w for w in waves if w.harmonic == 1.0), None)
+    if wave is None or wheel.radius is None:
+        return None
+    both = any(term.kind == "swing" for term in fit.terms)
+    alpha = wheel.pressure_angle
+    side = _side(points, turned=turned)
+    flanks = "both" if both else "one" if side else "unknown"
+    lean = 0.0 if both or alpha is None else side * alpha
+    slack = 0.0 if both or side else alpha or 0.0
+    factor = wheel.radius * (1.0 if both or alpha is None else math.cos(alpha))
+    direction = (wave.length.direction + math.pi / 2.0 + lean) % math.tau
+    within = wave.length.within
+    return Eccentric(
+        Interval(factor * wave.length.value, factor * wave.length.low, factor * wave.length.high),
+        direction,
+        None if within is None else within + slack,
+        wheel.tooth(direction),
+        flanks,
+        _looks(fit, spread, nu, alpha) if both and alpha is not None else "",
+        wave.open if alpha is not None or both else wave.open or "the pressure angle of the teeth is not stated",
+    )
+
+
+def _side(points: Points, *, turned: bool) -> int:
+    """Wall of the gap the worm pushed on, where all readings were taken in one direction: +1, -1; 0 not known.
+
+    Turned forward the work goes counter-clockwise. Places of the work pass a worm forward when it goes clockwise.
+    """
+    found = np.unique(points.direction)
+    if len(found) != 1 or found[0] == 0:
+        return 0
+    return int(found[0]) if turned else -int(found[0])
+
+
+def _looks(fit: Fit, spread: float, nu: float, alpha: float) -> str:
+    """Whether both flanks differ as those of an eccentric ring do, or not at all, as those of a divided one.
+
+    Forward less reverse is 2 tan(alpha) (-b, a) where (a, b) is the mean of both, in the frame of the file. Places of the
+    work: forward is side -1, the mean (e/r) sin(phi - theta) has a = (e/r) sin phi, b = -(e/r) cos phi, and the difference is
+    2 (e/r) tan(alpha) cos(phi - theta).  Turns of the work: forward is side +1 and d(Phi) = -delta(-Phi): the same again.
+    """
+    swing = Term("swing", 1.0)
+    mean = fit.vector(Term("wave", 1.0))
+    seen, covariance = fit.vector(swing), fit.covariance(swing) * spread
+    base = 2.0 * math.tan(alpha) * np.array([[0.0, -1.0], [1.0, 0.0]])
+    expected = base @ mean
+    own = base @ (fit.covariance(Term("wave", 1.0)) * spread) @ base.T
+    far = [_chance(seen - expected, covariance + own, nu), _chance(seen, covariance, nu)]
+    if far[0] > 0.01 >= far[1]:
+        return "eccentric"
+    if far[1] > 0.01 >= far[0]:
+        return "division"
+    return "neither" if max(far) <= 0.01 else "undecided"
+
+
+def _chance(vector: Reals, covariance: Reals, nu: float) -> float:
+    """Chance of a vector so long where there is none (Hotelling)."""
+    if not np.linalg.det(covariance) > 0.0:
+        return 1.0
+    square = float(vector @ np.linalg.solve(covariance, vector))
+    return f_above(square / 2.0, 2.0, min(max(nu, 1.0), 1e5))
