@@ -8,12 +8,12 @@ from typing import TypeVar
 
 from pydantic import BaseModel
 
-from setupcheck.jobfile.dividing import Divide, Waves
+from setupcheck.jobfile.dividing import WAYS_OF, Divide, Waves
 from setupcheck.jobfile.models import Deviation, Machine
 from setupcheck.jobfile.reading import LoadedJob
 from setupcheck.jobfile.setups import Head, Job, Setup
 from setupcheck.quantities.device_record import DeviceRecord, Series
-from setupcheck.quantities.dividing import typical_errors
+from setupcheck.quantities.dividing import has_own_errors, typical_errors
 from setupcheck.quantities.route import machine_of
 from setupcheck.quantities.typical import own_name
 from setupcheck.record import record
@@ -27,6 +27,13 @@ OF_KEY: Mapping[str, tuple[str, ...]] = {
     "depth_error": ("position", "touch", "reading"),
 }
 """What an error entry that names a device may take from its record, first found. Source: as typical values are taken."""
+
+TURNS_A_CRANK = ("hole-circle", "rotary-table")
+"""Ways of dividing with the worm of the machine, whose record of the crank is theirs."""
+BY_THE_MACHINE = (*TURNS_A_CRANK, "vernier", "readout")
+"""Ways of dividing that go by the machine's own wheel or scale; a plate, a polygon or a theodolite has its own record."""
+TILTED_BY_THE_MACHINE = (None, "scale", "vernier", "readout")
+"""Ways of setting a tilt that go by the machine's own scale; a sine bar has its own record."""
 
 M = TypeVar("M", bound=BaseModel)
 
@@ -51,9 +58,10 @@ class RecordUse:
 def with_record(loaded: LoadedJob, found: DeviceRecord) -> tuple[LoadedJob, RecordUse]:
     """The job with the record's limits put where it names a device, or a machine, and states no value of its own.
 
-    A device is looked up by its own name (`four-jaw-A`); tilt, division and axis by the name of the machine, else by the way
-    (`scale`, `hole-circle`); heat and cold by what makes or reads them.  A thin record, or one all alike, gives nothing and
-    the typical value stays.  What is measured or stated in the job stays as it is.
+    A device is looked up by its own name (`four-jaw-A`); the axis by the name of the machine; tilt and division by it as well
+    where they go by the machine's own scale, wheel or worm, else by the way (`sine-bar`, `polygon`); heat and cold by what
+    makes or reads them.  A thin record, or one all alike, gives nothing and the typical value stays.  What is measured or
+    stated in the job stays as it is.
     """
     filling = _Filling(loaded, found)
     job = filling.job()
@@ -154,21 +162,19 @@ class _Filling:
     def _head(self, head: Head, machine: str | None, path: str) -> Head:
         if head.uncertainty is not None:
             return head
-        return _changed(
-            head, _those({"uncertainty": self.take(f"{path}.head.uncertainty", (machine, head.by), ("tilt",))})
-        )
+        names = (machine if head.by in TILTED_BY_THE_MACHINE else None, head.by)
+        return _changed(head, _those({"uncertainty": self.take(f"{path}.head.uncertainty", names, ("tilt",))}))
 
     def _divide(self, setup: Setup, path: str) -> Divide | None:
         """The division with what the record keeps of it; what it does not keep takes its typical value beside it."""
         divide = setup.divide
-        if divide is None or divide.wheel is not None or divide.setting is not None:
-            return divide
-        if not _divides(self.loaded, setup):
+        if divide is None or has_own_errors(divide) or not _divides(self.loaded, setup):
             return divide
         keys = {"wheel.once_per_turn": "once_per_turn", "setting": "setting"}
-        if divide.worm is None:
+        keys = {key: what for key, what in keys.items() if divide.by in WAYS_OF[key.partition(".")[0]]}
+        if divide.worm is None and divide.by in TURNS_A_CRANK:
             keys["worm.once_per_crank"] = "once_per_crank"
-        names = (setup.machine, divide.by)
+        names = (setup.machine if divide.by in BY_THE_MACHINE else None, divide.by)
         errors = _those({key: self.take(f"{path}.divide.{key}", names, (what,)) for key, what in keys.items()})
         if not errors:
             return divide

@@ -222,6 +222,35 @@ def test_a_head_with_one_error_on_record_takes_the_others_as_typical_and_the_war
     assert "Rests on typical values: hole-circle once per crank, hole-circle setting." in told
 
 
+@pytest.mark.parametrize("by", ["direct", "polygon", "theodolite", "face-teeth", "sine-bar"])
+def test_a_way_past_the_heads_wheel_and_worm_takes_nothing_of_the_heads_record(by: str, shop: Path) -> None:
+    text = changed(WHEEL, (DIVIDE, f"divide: {{by: {by}}}"))
+    found = judged(text, write(shop, WHEEL_OF_HEAD, CRANK, SETTING))
+    assert () == found.devices.uses  # type: ignore[union-attr]
+    own = judged(text, write(shop, (by, *SETTING[1:]), (by, *CRANK[1:])))
+    assert ["setups.40.divide.setting"] == [use.path for use in own.devices.uses]  # type: ignore[union-attr]
+
+
+def test_coordinates_have_no_setting_of_an_angle_and_a_stated_part_of_a_way_is_its_record(shop: Path) -> None:
+    for way in ("by: x-y", 'by: polygon, sighting: 1"'):
+        text = changed(WHEEL, (DIVIDE, f"divide: {{{way}}}"))
+        found = judged(text, write(shop, ("x-y", *SETTING[1:]), ("polygon", *SETTING[1:])))
+        assert () == found.devices.uses  # type: ignore[union-attr]
+
+
+def test_a_readout_has_no_worm_to_take_from_the_head(shop: Path) -> None:
+    text = changed(WHEEL, (DIVIDE, "divide: {by: readout}"))
+    found = judged(text, write(shop, WHEEL_OF_HEAD, CRANK, SETTING))
+    assert {"setups.40.divide.wheel.once_per_turn", "setups.40.divide.setting"} == set(found.loaded.own)
+
+
+def test_a_sine_bar_sets_a_tilt_past_the_heads_scale(shop: Path) -> None:
+    text = changed(WHEEL, (TILT[0], "by: sine-bar, leans"))
+    assert () == judged(text, write(shop, HEAD)).devices.uses  # type: ignore[union-attr]
+    found = judged(text, write(shop, ("sine-bar", *HEAD[1:])))
+    assert {"sine-bar tilt (shop record, 5 entries)"} == rests(found, "TILT-008")
+
+
 def test_a_device_that_wears_is_told_beside_its_limit(shop: Path) -> None:
     found = judged(changed(WHEEL, NAMED), write(shop, (*CHUCK[:3], (5, 6, 5, 6, 5, 12, 13))))
     assert "the last 2 values lie above the limit of the 5 before: the device wears" in flat(as_text(found))
