@@ -9,7 +9,7 @@ from pathlib import Path
 from typing import TYPE_CHECKING
 
 from setupcheck.jobfile.reading import LoadedJob, read_job
-from setupcheck.quantities.book import Book, Known, Scope
+from setupcheck.quantities.book import Book, Known, Open, Scope
 from setupcheck.quantities.facts import UnknownFact, facts_of
 from setupcheck.quantities.gates import Gate, gates
 from setupcheck.quantities.judged import Result
@@ -34,6 +34,7 @@ from setupcheck.shipped import shipped
 
 if TYPE_CHECKING:
     from setupcheck.division.results import Reduced
+    from setupcheck.quantities.against import Against
     from setupcheck.quantities.division_test import Tested
     from setupcheck.quantities.own_values import RecordUse
     from setupcheck.quantities.remedies import Remedy
@@ -133,11 +134,12 @@ def with_devices(loaded: LoadedJob, path: str | Path) -> tuple[LoadedJob, Record
 
 @record(eq=False)
 class ReadBack:
-    """A division test read back: the job, the teeth it is of, what it says, and the name of its file."""
+    """A division test read back: the job, the teeth it is of, what it says, how that stands to the plan, and its file's name."""
 
     loaded: LoadedJob
     of: Tested
     reduced: Reduced
+    against: Against | Open
     file: str
 
 
@@ -147,21 +149,26 @@ def read_back(
     *,
     of: str | None = None,
     turns_with_work: bool = False,
+    instrument: float | None = None,
     progress: Callable[[int], None] | None = None,
 ) -> ReadBack:
     """Reduce the readings of a division test with what the job says of the teeth.
 
     of               `part.surface` of the teeth, where the job has more than one;  progress  bytes of the file read so far
     turns_with_work  stations are turns of the work, as for an instrument that rides on it
+    instrument       expanded uncertainty of the angle standard, k = 2 [rad]; without it nothing is judged
     Raises: JobError; SetupcheckError for the readings.
     """
     from setupcheck.division.readings import read_test
+    from setupcheck.quantities.against import against
     from setupcheck.quantities.division_test import reduced, tested
 
     loaded = job if isinstance(job, LoadedJob) else load_job(job)
-    teeth = tested(walk(loaded), of)
+    floor, book = prepare(loaded)
+    teeth = tested(floor, of)
     found = read_test(readings, progress=progress)
-    return ReadBack(loaded, teeth, reduced(found, teeth, turns_with_work=turns_with_work), found.file)
+    test = reduced(found, teeth, turns_with_work=turns_with_work)
+    return ReadBack(loaded, teeth, test, against(book, floor, test, teeth.name, instrument=instrument), found.file)
 
 
 def _house(path: Path, rulebook: RuleBook, book: Book) -> House:

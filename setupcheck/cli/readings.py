@@ -26,10 +26,19 @@ def command(
     turns_with_work: Annotated[
         bool, typer.Option("--turns-with-work", help="Stations are turns of the work: the instrument rides on it.")
     ] = False,
+    instrument: Annotated[
+        str | None,
+        typer.Option(help="Uncertainty of the angle standard, k = 2, as in 1.5arcsec: without it no verdict."),
+    ] = None,
+    diameter: Annotated[
+        str | None, typer.Option(help="Diameter of a workpiece to tell the range on, as in 200 or 8 in.")
+    ] = None,
     as_json: Annotated[bool, typer.Option("--json", help="Print JSON instead of text.")] = False,
     template: Annotated[bool, typer.Option("--template", help="Print a CSV to start from and stop.")] = False,
 ) -> None:
-    """Reduce the readings of a division test: eccentricity, worm, backlash, scatter. Exit 0 told, 1 open, 2 unreadable.
+    """Reduce the readings of a division test, and set them against the plan: eccentricity, worm, backlash, scatter, owner.
+
+    Exit 0 inside the limit, 1 warn or open, 2 unreadable, 3 outside the limit.
 
     Example: setupcheck readings jobs/rotator-worm-wheel.yaml test.csv
     """
@@ -40,15 +49,41 @@ def command(
         return
     if job is None or readings is None:
         raise typer.BadParameter("write the job and its readings, as in: setupcheck readings wheel.yaml test.csv")
-    found = _read(job, readings, of, turns_with_work=turns_with_work)
+    sure = _angle(instrument) if instrument is not None else None
+    found = _read(job, readings, of, turns_with_work=turns_with_work, instrument=sure)
+    from setupcheck.report.against import verdict
     from setupcheck.report.readings import as_json as in_json
     from setupcheck.report.readings import as_text
 
-    sys.stdout.write(in_json(found) if as_json else as_text(found))
-    raise typer.Exit(0 if found.reduced.verdict == "told" else 1)
+    size = _size(diameter, found) if diameter is not None else None
+    sys.stdout.write(in_json(found) if as_json else as_text(found, diameter=size))
+    raise typer.Exit({"pass": 0, "fail": 3}.get(verdict(found), 1))
 
 
-def _read(job: Path, readings: Path, of: str | None, *, turns_with_work: bool) -> "ReadBack":
+def _angle(text: str) -> float:
+    """Uncertainty of an angle [rad]."""
+    from setupcheck.notation import NotationError, angle_bound
+
+    try:
+        return angle_bound(text)
+    except NotationError as why:
+        raise typer.BadParameter(f"--instrument: {why}") from None
+
+
+def _size(text: str, found: "ReadBack") -> float:
+    """Diameter of a workpiece [mm]."""
+    from setupcheck.notation import NotationError, length
+
+    try:
+        size = length(text, units=found.loaded.job.units)
+    except NotationError as why:
+        raise typer.BadParameter(f"--diameter: {why}") from None
+    if size <= 0.0:
+        raise typer.BadParameter(f"--diameter: '{text}' is no size of a workpiece. Write it as in 200 mm")
+    return size
+
+
+def _read(job: Path, readings: Path, of: str | None, *, turns_with_work: bool, instrument: float | None) -> "ReadBack":
     from setupcheck.flow import read_back
 
     try:
@@ -56,7 +91,7 @@ def _read(job: Path, readings: Path, of: str | None, *, turns_with_work: bool) -
     except OSError:
         size = 0
     if size < LARGE or not sys.stderr.isatty():
-        return read_back(job, readings, of=of, turns_with_work=turns_with_work)
+        return read_back(job, readings, of=of, turns_with_work=turns_with_work, instrument=instrument)
     from rich.console import Console
     from rich.progress import Progress
 
@@ -67,5 +102,6 @@ def _read(job: Path, readings: Path, of: str | None, *, turns_with_work: bool) -
             readings,
             of=of,
             turns_with_work=turns_with_work,
+            instrument=instrument,
             progress=lambda done: bar.update(task, completed=done),
         )

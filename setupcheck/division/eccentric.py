@@ -71,6 +71,7 @@ def eccentric(
         None if within is None else within + slack,
         wheel.tooth(direction),
         flanks,
+        0 if both else side,
         _looks(fit, spread, nu, alpha) if both and alpha is not None else "",
         wave.open if alpha is not None or both else wave.open or "the pressure angle of the teeth is not stated",
     )

@@ -18,7 +18,7 @@ from setupcheck.division.fit import SURE, Fit, Scatter, fitted, scatter_of
 from setupcheck.division.points import Points, Prepared, gap_of, prepare, without
 from setupcheck.division.readings import Readings
 from setupcheck.division.repeatability import repeatability, sighting
-from setupcheck.division.results import Flag, Interval, Reduced, Unseen, Wave
+from setupcheck.division.results import Flag, Flanks, Interval, Reduced, Unseen, Wave
 from setupcheck.errors import SetupcheckError
 from setupcheck.record import record
 
@@ -102,16 +102,19 @@ def reduce(
         limits=(*ready.limits, *_limits(found)),
         rows=len(readings),
         stations=found.plan.stations,
+        places=_places(found.points, count),
         runs=len(readings.runs),
         waves=waves,
         unseen=unseen,
         eccentric=off,
+        flanks=_flanks(found, turned),
         worm=own,
         scatter=found.scatter.repeat if found.scatter.repeat_nu >= 3 and found.scatter.repeat is not None
         else _root(found.fit.square / found.fit.nu if found.fit.nu else math.nan),
         nu=found.scatter.repeat_nu if found.scatter.repeat_nu >= 3 else found.fit.nu,
         stations_scatter=found.scatter.stations,
         range=_range(found),
+        range_without_first=_range(found, centred=True) if Term("wave", 1.0) in found.fit.terms else None,
         drift=_single(found, Term("drift")),
         closure=_closure(found.points),
         reversal=_single(found, Term("reversal")),
@@ -246,6 +249,25 @@ def _waves(found: _Found, names: dict[float, str], turned: bool, reasons: Sequen
     return tuple(made)
 
 
+def _flanks(found: _Found, turned: bool) -> Flanks | None:
+    """Mean and difference of both flanks in the first wave; turned as in `eccentric.py` where stations are turns."""
+    wave, swing = Term("wave", 1.0), Term("swing", 1.0)
+    if wave not in found.fit.terms or swing not in found.fit.terms or not found.spread > 0.0:
+        return None
+    at = np.concatenate([np.arange(found.fit.values.size)[found.fit.at(term)] for term in (wave, swing)])
+    sense = np.array([-1.0, 1.0, 1.0, -1.0]) if turned else np.ones(4)
+    a, b, c, d = (float(x) for x in found.fit.values[at] * sense)
+    covariance = found.fit.inverse[np.ix_(at, at)] * found.spread * np.outer(sense, sense)
+    return Flanks((a, b, c, d), tuple(tuple(map(float, row)) for row in covariance))
+
+
+def _places(points: Points, count: int) -> int:
+    """Stations that are whole pitches apart from the first: different teeth, not places within a pitch."""
+    pitches = (points.theta - points.theta[0]) * count / math.tau
+    whole = np.round(pitches)
+    return len(np.unique(np.remainder(whole[np.abs(pitches - whole) < 0.01], count)))
+
+
 def _sag_on(found: _Found, term: Term) -> float:
     """What a bend of the size of the drift would add to a wave [rad]."""
     if found.sag <= 0.0:
@@ -314,13 +336,17 @@ def _closure(points: Points) -> float | None:
     return None
 
 
-def _range(found: _Found) -> float:
-    """Largest less smallest mean of a station, zeros and drift off, the larger of both directions [rad]."""
+def _range(found: _Found, *, centred: bool = False) -> float:
+    """Largest less smallest mean of a station, zeros and drift off, the larger of both directions [rad].
+
+    centred  the first wave taken off as well, of both flanks where both were read
+    """
     p, worst = found.points, 0.0
     rest = np.array(p.y)
     for term in found.fit.terms:
-        if term.kind in ("zero", "drift", "bend"):
-            rest -= columns(term, p, slice(None))[0] * found.fit.vector(term)[0]
+        first = term.kind in ("wave", "swing") and term.harmonic == 1.0
+        if term.kind in ("zero", "drift", "bend") or (centred and first):
+            rest -= np.asarray(found.fit.vector(term)) @ np.asarray(columns(term, p, slice(None)))
     for direction in np.unique(p.direction):
         mine = p.direction == direction
         _, at = np.unique(np.round(np.remainder(p.theta[mine], math.tau), 8), return_inverse=True)

@@ -56,6 +56,17 @@ class Wave:
 
 
 @record
+class Flanks:
+    """Both flanks of the first wave: mean (a, b), and forward less reverse (a, b), in the frame of the work [rad].
+
+    covariance  of these four, row by row [rad2].  Teeth off their axis have the difference 2 tan(alpha) (-b, a) of the mean.
+    """
+
+    vector: tuple[float, float, float, float]
+    covariance: tuple[tuple[float, ...], ...]
+
+
+@record
 class Unseen:
     """A wave that these stations cannot show: why, and which waves it is taken for."""
 
@@ -71,6 +82,7 @@ class Eccentric:
 
     within  half the interval of the direction [rad], None where there is none
     flanks  both, one (known which), or unknown: then the direction is out by up to the pressure angle besides
+    side    flank that was read, +1 counter-clockwise, -1 the other; 0 for both or unknown
     looks   what both flanks say: eccentric, division or undecided; empty with one
     """
 
@@ -79,6 +91,7 @@ class Eccentric:
     within: float | None
     tooth: int
     flanks: str
+    side: int
     looks: str
     open: str = ""
 
@@ -101,8 +114,11 @@ class Reduced:
     rows        readings;  stations, runs  different ones
     scatter     standard deviation of one reading [rad], nu its degrees of freedom;  stations_scatter  of places themselves
     range       largest less smallest mean of a station, drift taken off [rad], the larger of both directions
+    range_without_first  the same with the first wave taken off as well, None where it is not fitted
     drift       over the whole test [rad];  closure  last less first reading of the first station, None where not repeated
     reversal    forward less reverse [rad], None with why in `no_reversal`
+    flanks      both flanks of the first wave, None where one was read
+    places      stations that are whole pitches apart from the first
     worm        the wave of the own worm, None where it is not seen
     sighting    standard deviation of a direction sighted once in both faces [rad], degrees of freedom; None with one face
     without     the waves fitted without the flagged readings
@@ -115,15 +131,18 @@ class Reduced:
     limits: tuple[str, ...]
     rows: int
     stations: int
+    places: int
     runs: int
     waves: tuple[Wave, ...]
     unseen: tuple[Unseen, ...]
     eccentric: Eccentric | None
+    flanks: Flanks | None
     worm: Wave | None
     scatter: float
     nu: int
     stations_scatter: float
     range: float
+    range_without_first: float | None
     drift: Interval | None
     closure: float | None
     reversal: Interval | None

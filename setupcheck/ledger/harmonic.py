@@ -86,7 +86,9 @@ def _deeper(figure: Tooth) -> float:
 def _scattered(scatter: Scatter, figure: Tooth, harmonic: int, draws: Draws, side: int) -> Complexes:
     """The wave in errors that each place draws for itself, drawn place by place."""
     pattern = figure.pattern
-    arcs = draws.scatter(scatter, pattern) * pattern.turn if scatter.goes_round else np.zeros((1, pattern.count))
+    arcs: Reals = np.zeros((draws.trials, pattern.count))
+    if scatter.goes_round:
+        arcs = draws.scatter(scatter, pattern) * pattern.turn
     if scatter.goes_outward and _deeper(figure):
         arcs = arcs + side * _deeper(figure) * draws.scatter(scatter, pattern, outward=True)
     return np.asarray(arcs @ _basis(figure, harmonic))

@@ -6,7 +6,8 @@ Only `setupcheck readings` needs it. Lengths mm, angles rad; waves as arcs on th
 from __future__ import annotations
 
 import math
-from collections.abc import Iterator
+from collections.abc import Iterator, Mapping
+from dataclasses import replace
 
 import numpy as np
 from numpy.typing import NDArray
@@ -20,6 +21,7 @@ from setupcheck.ledger.figures import Tooth
 from setupcheck.ledger.running import AsItRuns
 from setupcheck.quantities.book import Book, Known, Open, Scope
 from setupcheck.quantities.judged import Result
+from setupcheck.quantities.scopes import stack_of
 from setupcheck.quantities.shop import Floor
 from setupcheck.record import record
 
@@ -28,8 +30,8 @@ Reals = NDArray[np.floating]
 INDEX = ("index-within", "index-range", "on-workpiece", "cumulative-pitch", "gap-centre-pitch")
 """Requirements a division test answers, the nearest to what it reads first."""
 
-SMALL = 0.0005
-"""Length of a wave that nobody has to explain [mm]. Our screening choice."""
+PUZZLING = 0.05
+"""How rarely a plan that is kept may give a wave before an owner is looked for. Our screening choice."""
 
 
 @record(eq=False)
@@ -52,72 +54,88 @@ class WaveAgainst:
 class Move:
     """What putting the first wave right would bring.
 
-    amount, within    how far the teeth are off the axis of use, and its 95 % half interval [mm]
-    range, then       range of the index now, and with the first wave gone [rad];  then_most  with what is left of its interval
+    amount, within    how far the teeth are off the axis of use, and its 95 % half interval [mm];  tooth  towards which
+    then, most        what is left of a figure with the first wave gone, and with what is left of its interval, as shares
     """
 
     amount: float
     within: float
-    range: float
+    tooth: int
     then: float
-    then_most: float
+    most: float
+
+
+@record(eq=False)
+class Answer:
+    """What the test says to one requirement.
+
+    scope, plan  the requirement, and its figure as planned
+    value, u     as measured, and the standard uncertainty of that, None without the instrument's [base unit of the figure]
+    """
+
+    scope: Scope
+    plan: Result
+    value: float
+    u: float | None
 
 
 @record(eq=False)
 class Against:
     """A test against the plan.
 
-    stack      the requirement it is held against, None where the job has none;  figure  its value as measured [its unit]
-    u          standard uncertainty of that;  worst, likely  as planned
-    read, of   stations read, places there are
-    radius     of the pitch circle [mm]
+    answers    to the requirements of these teeth that a test answers, the nearest to what it reads first
+    scatter    what the scatter of the readings alone does to a difference of two stations, k = 2 [rad]
+    read, of   places read, places there are
     """
 
-    stack: Result | None
-    figure: float | None
-    u: float | None
+    answers: tuple[Answer, ...]
+    scatter: float
     waves: tuple[WaveAgainst, ...]
     move: Move | None
     read: int
     of: int
-    radius: float
 
 
-def index_stack(book: Book) -> Scope | None:
-    """The requirement a division test answers; None where the job asks for none."""
-    scopes = [s for s in book.instances("stack") if s.node.require.what in INDEX]  # type: ignore[attr-defined]
-    return min(scopes, key=lambda s: INDEX.index(s.node.require.what), default=None)  # type: ignore[attr-defined]
+def asked(book: Book, floor: Floor, of: str) -> list[Scope]:
+    """The requirements of these teeth that a division test answers, best first."""
+    scopes = [s for s in book.instances("stack") if stack_of(s).require.what in INDEX]
+    mine = [s for s in scopes if str(replace(floor.loaded.ref(stack_of(s).of), op=None)) == of]
+    return sorted(mine, key=lambda s: INDEX.index(stack_of(s).require.what))
 
 
-def against(book: Book, floor: Floor, test: Reduced, scope: Scope | None) -> Against | Open:
-    """The test against the figure of one requirement; Open where the plan's figure is not known.
+def against(book: Book, floor: Floor, test: Reduced, of: str, *, instrument: float | None = None) -> Against | Open:
+    """The test of some teeth against the plan; Open where the job asks for no such figure, or the plan's is not known.
 
+    instrument  expanded uncertainty of the angle standard, k = 2, between any two stations [rad]; None: not stated
     Source: ledger.harmonic for the plan, division.owners for the odds.
     """
-    if scope is None:
-        return Open(because="the job requires no index or pitch figure of a toothing: write one under require")
-    answer = book.get("stack.combined", scope)
-    if not isinstance(answer, Known) or not isinstance(answer.value, Result):
-        return answer if isinstance(answer, Open) else Open(because="the figure of that requirement is not known")
-    result = answer.value
-    ring = result.figure.ring if isinstance(result.figure, AsItRuns) else result.figure
+    scopes = asked(book, floor, of)
+    if not scopes:
+        return Open(because=f"no index or pitch figure of {of} is required: write one, as in what: index-within")
+    found = [(scope, book.get("stack.combined", scope)) for scope in scopes]
+    known = [(s, a.value) for s, a in found if isinstance(a, Known) and isinstance(a.value, Result)]
+    if not known:
+        return next((a for _, a in found if isinstance(a, Open)), Open(because="the plan's figure is not known"))
+    first = known[0][1].figure
+    ring = first.ring if isinstance(first, AsItRuns) else first
     if not isinstance(ring, Tooth):
         return Open(because="the figure of that requirement is none of a ring of teeth or holes")
     drawn = book.get("route.draws", book.instances("job")[0])
     assert isinstance(drawn, Known) and isinstance(drawn.value, Draws)
-    radius = ring.pattern.radius
-    waves = tuple(_waves(test, ring, drawn.value))
-    factor = _factor(result, radius)
-    u = test.scatter * math.sqrt(2.0 * max(test.stations, 1) / max(test.rows, 1))
+    scatter = test.scatter * math.sqrt(2.0 * max(test.stations, 1) / max(test.rows, 1))
+    u = math.hypot(scatter, instrument / 2.0) if instrument is not None else None
+    factors = [(scope, plan, _factor(plan, ring.pattern.radius)) for scope, plan in known]
     return Against(
-        stack=result,
-        figure=factor * test.range if factor is not None else None,
-        u=factor * u if factor is not None else None,
-        waves=waves,
-        move=_move(test, waves, radius),
-        read=test.stations,
+        answers=tuple(
+            Answer(scope, plan, f * test.range, None if u is None else f * u)
+            for scope, plan, f in factors
+            if f is not None
+        ),
+        scatter=2.0 * scatter,
+        waves=tuple(_waves(test, ring, drawn.value)),
+        move=_move(test, ring.pattern.radius),
+        read=test.places,
         of=ring.pattern.count,
-        radius=radius,
     )
 
 
@@ -134,42 +152,69 @@ def _factor(result: Result, radius: float) -> float | None:
 
 
 def _waves(test: Reduced, ring: Tooth, draws: Draws) -> Iterator[WaveAgainst]:
-    radius, side = ring.pattern.radius, _side(test)
+    radius = ring.pattern.radius
     for wave in test.waves:
         number = round(wave.harmonic)
         if abs(wave.harmonic - number) > 1e-9 or not 1 <= number < ring.pattern.count / 2.0:
             continue
+        side = test.eccentric.side if test.eccentric is not None else 0
         planned = harmonic.planned_wave(ring, number, draws, side=side)
-        aa, ab, bb = wave.covariance
         yield WaveAgainst(
             wave,
             radius * wave.length.value,
             radius * wave.length.low,
             radius * wave.length.high,
             float(np.quantile(np.abs(planned.drawn), 0.95)),
-            None if wave.open else _explained(wave, planned, radius**2 * np.array([[aa, ab], [ab, bb]]), radius),
+            None if wave.open else _explained(test, wave, planned, ring, draws),
         )
 
 
-def _side(test: Reduced) -> int:
-    """Flank the wave is of: 0 where both were read, or nobody knows which."""
-    return test.eccentric.side if test.eccentric is not None else 0
-
-
-def _explained(wave: Wave, planned: harmonic.Wave, uncertainty: Reals, radius: float) -> Explained | None:
-    spreads: dict[str, Reals] = {}
-    for part in planned.parts:
-        name = owner(part.cause)
-        spreads[name] = spreads.get(name, np.zeros((2, 2))) + part.covariance
+def _explained(test: Reduced, wave: Wave, planned: harmonic.Wave, ring: Tooth, draws: Draws) -> Explained | None:
+    """Owners of a wave; where both flanks were read, of its mean and their difference together."""
+    radius = ring.pattern.radius
+    if test.flanks is not None and planned.harmonic == 1 and ring.pattern.pressure_angle:
+        mean, spreads = _of_both_flanks(ring, draws)
+        read, covariance = np.array(test.flanks.vector), np.array(test.flanks.covariance)
+    else:
+        mean, spreads = _by_owner({p.cause.identity: (p.cause, _plane(p.drawn)) for p in planned.parts})
+        mean = mean + _plane(np.array([planned.known]))[:, 0]
+        aa, ab, bb = wave.covariance
+        read, covariance = np.array([wave.a, wave.b]), np.array([[aa, ab], [ab, bb]])
     try:
-        return explained(
-            (radius * wave.a, radius * wave.b),
-            uncertainty,
-            expected=(planned.middle.real, planned.middle.imag),
-            spreads=spreads,
-        )
+        return explained(radius * read, radius**2 * covariance, expected=mean, spreads=spreads)
     except ValueError:
         return None
+
+
+def _plane(values: NDArray[np.generic]) -> Reals:
+    return np.stack([np.real(values), np.imag(values)])
+
+
+def _of_both_flanks(ring: Tooth, draws: Draws) -> tuple[Reals, dict[str, Reals]]:
+    """Middle (4,) and covariance by owner of mean and difference of both flanks: places of the work turned forward are read on
+    the clockwise flank, so the difference is side -1 less side +1."""
+    sides = {side: harmonic.planned_wave(ring, 1, draws, side=side) for side in (-1, 1)}
+    drawn = {side: {p.cause.identity: (p.cause, p.drawn) for p in wave.parts} for side, wave in sides.items()}
+    both: dict[str, tuple[Cause, Reals]] = {}
+    for name in drawn[-1] | drawn[1]:
+        cause = drawn[-1][name][0] if name in drawn[-1] else drawn[1][name][0]
+        less, more = (drawn[side][name][1] if name in drawn[side] else np.zeros(draws.trials) for side in (-1, 1))
+        both[name] = cause, np.concatenate([_plane((less + more) / 2.0), _plane(less - more)])
+    mean, spreads = _by_owner(both)
+    less_known, more_known = sides[-1].known, sides[1].known
+    known = np.array([(less_known + more_known) / 2.0, less_known - more_known])
+    return mean + np.stack([known.real, known.imag], axis=1).ravel(), spreads
+
+
+def _by_owner(parts: Mapping[str, tuple[Cause, Reals]]) -> tuple[Reals, dict[str, Reals]]:
+    """Middle and covariance of all that each owner may add, from its causes as drawn, each of shape (n, trials)."""
+    total: dict[str, Reals] = {}
+    for cause, drawn in parts.values():
+        name = owner(cause)
+        total[name] = total[name] + drawn if name in total else drawn
+    sizes = [len(drawn) for drawn in total.values()]
+    middle = sum((drawn.mean(axis=1) for drawn in total.values()), np.zeros(sizes[0] if sizes else 2))
+    return middle, {name: np.cov(drawn) for name, drawn in total.items()}
 
 
 def owner(cause: Cause) -> str:
@@ -180,13 +225,13 @@ def owner(cause: Cause) -> str:
     return f"op {cause.op}, {'dividing' if dividing else 'holding'}"
 
 
-def _move(test: Reduced, waves: tuple[WaveAgainst, ...], radius: float) -> Move | None:
-    """What truing the teeth's axis to the axis of use would bring; None where nothing can be told of it."""
-    off = test.eccentric
-    if off is None or off.open or not waves or waves[0].wave.harmonic != 1.0:
-        return None
-    rest = test.range_without_first
-    if rest is None:
+def _move(test: Reduced, radius: float) -> Move | None:
+    """What truing the teeth's axis to the axis of use would bring; None where nothing can be told of it.
+
+    Source: the readings less their first wave; what is left of its interval counts to both sides.
+    """
+    off, rest = test.eccentric, test.range_without_first
+    if off is None or off.open or rest is None or off.amount.low <= 0.0 or not test.range > 0.0:
         return None
     left = (off.amount.high - off.amount.low) / 2.0
-    return Move(off.amount.value, left, test.range, rest, rest + 2.0 * left / radius)
+    return Move(off.amount.value, left, off.tooth, rest / test.range, (rest + 2.0 * left / radius) / test.range)

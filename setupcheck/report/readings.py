@@ -13,6 +13,8 @@ from setupcheck.division.template import template
 from setupcheck.errors import printable
 from setupcheck.flow import ReadBack
 from setupcheck.notation import FACTOR, fixed
+from setupcheck.report.against import against_the_plan, on_a_workpiece
+from setupcheck.report.against import as_data as plan_as_data
 from setupcheck.report.wording import clean, wrap
 
 __all__ = ["as_data", "as_json", "as_text", "template"]
@@ -27,9 +29,18 @@ WORDS = {
 }
 
 
-def as_text(found: ReadBack) -> str:
-    """The whole report."""
-    parts = (_head(found), _before(found.reduced), _answers(found), _rest(found), _iso(found.reduced), _flagged(found))
+def as_text(found: ReadBack, *, diameter: float | None = None) -> str:
+    """The whole report; diameter  of a workpiece the range is told on as well [mm]."""
+    parts = (
+        _head(found),
+        _before(found.reduced),
+        _answers(found),
+        against_the_plan(found),
+        wrap(on_a_workpiece(found, diameter), first="  ", rest="      ") if diameter is not None else [],
+        _rest(found),
+        _iso(found.reduced),
+        _flagged(found),
+    )
     blocks = ["\n".join(block) for block in map(list, parts) if block]
     return "\n\n".join(blocks) + "\n"
 
@@ -243,6 +254,7 @@ def as_data(found: ReadBack) -> dict[str, object]:
     e, iso, c = r.eccentric, r.repeatability, r.collimation
     return {
         "format": FORMAT,
+        "plan": plan_as_data(found),
         "file": printable(found.file),
         "of": of.name,
         "verdict": r.verdict,

@@ -16,6 +16,8 @@ from setupcheck.shipped import shipped
 ROUTES = {"rotator-worm-wheel": "20.0", "wheel-on-spindle": "32.0"}
 """Shipped job -> radius of a cutter that leaves the ends of the face clear."""
 
+GRINDING = {f"INSERT-00{n}" for n in range(1, 7)}
+
 GOOD = (
     "{wheel_radius: 5 mm, step: 1 um, form_error: 5 um, stop_error: 1', way: swung, shank_side: 6 mm, touched_at: 8 mm}"
 )
@@ -36,8 +38,8 @@ def judged(route: str, grinding: str = GOOD) -> Review:
 
 
 def spoken(found: Review) -> dict[str, tuple[str, str]]:
-    """Verdict and message of the family's rules that do not pass."""
-    findings = (f for f in found.evaluation.findings if f.rule.startswith("INSERT") and f.verdict != "pass")
+    """Verdict and message of the family's rules that do not pass, but for how the insert sits in its bar."""
+    findings = (f for f in found.evaluation.findings if f.rule in GRINDING and f.verdict != "pass")
     return {f.rule: (f.verdict, f.message) for f in findings}
 
 
@@ -54,7 +56,7 @@ def with_keys(**changes: str) -> str:
 def test_the_good_way_of_grinding_passes_all_five_rules(route: str) -> None:
     found = judged(route)
     assert {} == spoken(found)
-    rules = {f.rule for f in found.evaluation.findings if f.rule.startswith("INSERT")}
+    rules = {f.rule for f in found.evaluation.findings if f.rule in GRINDING}
     assert {f"INSERT-00{n}" for n in range(1, 6)} == rules
 
 
@@ -112,7 +114,7 @@ def test_an_entry_left_out_is_open_and_named(key: str) -> None:
 @pytest.mark.parametrize("route", ROUTES)
 def test_a_form_error_alone_is_no_plan_of_grinding(route: str) -> None:
     found = judged(route, "{form_error: 5 um}")
-    assert not [f.rule for f in found.evaluation.findings if f.rule.startswith("INSERT")]
+    assert not [f.rule for f in found.evaluation.findings if f.rule in GRINDING]
     assert [*readings(found)] == []
     assert "laid over a drawing the form error shows from" in " ".join(inserts(found))
 
@@ -122,7 +124,7 @@ def test_a_form_error_alone_is_no_plan_of_grinding(route: str) -> None:
 )
 def test_anything_beside_a_form_error_asks_for_the_rest(more: str) -> None:
     found = judged("rotator-worm-wheel", f"{{form_error: 5 um, {more}}}")
-    told = {f.rule: f.verdict for f in found.evaluation.findings if f.rule.startswith("INSERT")}
+    told = {f.rule: f.verdict for f in found.evaluation.findings if f.rule in GRINDING}
     known = {"wheel_radius": "INSERT-001", "step": "INSERT-004"}.get(more.partition(":")[0], "")
     assert told == {f"INSERT-00{n}": "pass" if known.endswith(str(n)) else "open" for n in range(1, 6)}
     assert "cannot tell, fill cutters.fly.grinding." in " ".join(readings(found))
@@ -145,7 +147,7 @@ def test_a_width_without_limits_is_open_and_a_measured_one_is_not_judged_again()
 
 def test_without_the_exact_gap_nothing_of_it_is_judged_and_the_report_says_so() -> None:
     found = review(read_job_text(typed("wheel-on-spindle", exact=False), "slip.yaml"))
-    assert not [f for f in found.evaluation.findings if f.rule.startswith("INSERT")]
+    assert not [f for f in found.evaluation.findings if f.rule in GRINDING]
     assert not any(name.startswith("insert.") and answer is not None for (name, _), answer in found.book.made.items())
     assert "INSERT, cutter" not in as_text(found)
     assert "cutters.fly.grinding" in {one.at for one in uncomputed(found.loaded)}

@@ -1,0 +1,195 @@
+"""Division tests of the rotator's wheel against its plan. The files are written by plain arithmetic that knows no setupcheck."""
+
+from __future__ import annotations
+
+import json
+import math
+import random
+import subprocess
+import sys
+from pathlib import Path
+
+import pytest
+
+from setupcheck.flow import ReadBack, read_back
+from setupcheck.jobfile.reading import read_job_text
+from setupcheck.quantities.against import Against
+from setupcheck.report.against import verdict
+from setupcheck.report.readings import as_data, as_text
+from setupcheck.shipped import shipped
+
+JOB = shipped("jobs/rotator-worm-wheel.yaml")
+RADIUS, ALPHA, RATIO = 54.0, math.radians(20.0), 72
+ARCSEC = math.pi / 648_000.0
+ONE = 1.0 * ARCSEC
+
+
+def written(
+    folder: Path, *, e: float = 0.0, phi: float = 0.0, divided: float = 0.0, at: float = 0.0, noise: float = 0.7,
+    seed: int = 1, directions: tuple[str, ...] = ("forward", "reverse"), count: int = 24,
+) -> Path:  # fmt: skip
+    """A test of three runs: teeth off by e [mm] towards phi [deg], and a division wave [arcsec] highest at `at` [deg]."""
+    rng = random.Random(seed)
+    lines = ["angle_deg,run,direction,deviation_arcsec"]
+    stations = [360.0 * k / count for k in range(count)] + [0.0]
+    for run in range(1, 4):
+        zero = rng.uniform(-20.0, 20.0)
+        for direction in directions:
+            side = -1 if direction == "forward" else 1
+            for place in stations:
+                theta = math.radians(place)
+                off = e / (RADIUS * math.cos(ALPHA)) * math.sin(math.radians(phi) - theta - side * ALPHA) / ARCSEC
+                off += divided * math.cos(theta - math.radians(at)) + 6.0 * side + zero + rng.gauss(0.0, noise)
+                lines.append(f"{place},{run},{direction},{off:.3f}")
+    file = folder / "test.csv"
+    file.write_text("\n".join(lines) + "\n", encoding="utf-8")
+    return file
+
+
+def told(file: Path, *, instrument: float | None = ONE, text: str | None = None) -> tuple[ReadBack, Against]:
+    job = read_job_text(text, "job.yaml") if text is not None else JOB
+    found = read_back(job, file, instrument=instrument)
+    assert isinstance(found.against, Against)
+    return found, found.against
+
+
+def said(found: ReadBack) -> str:
+    """The report as one line."""
+    return " ".join(as_text(found).split())
+
+
+def test_a_small_error_passes_and_is_as_planned(tmp_path: Path) -> None:
+    found, a = told(written(tmp_path, e=0.003, phi=200.0))
+    assert "pass" == verdict(found)
+    first = a.waves[0]
+    assert first.explained is not None and first.explained.beyond > 0.05
+    assert first.measured == pytest.approx(0.003, abs=0.0002)
+    assert a.answers[0].value == pytest.approx(0.003 / (RADIUS * math.cos(ALPHA)), rel=0.15)
+    assert (24, 72) == (a.read, a.of)
+    assert "read at 24 of 72 places" in said(found)
+    assert ["index-within", "on-workpiece", "cumulative-pitch"] == [one.plan.stack.require.what for one in a.answers]
+    angle, arc, pitch = (one.value for one in a.answers)
+    assert (arc, pitch) == (pytest.approx(angle * 2.0 * 50.0), pytest.approx(angle * 2.0 * RADIUS))
+
+
+def test_a_large_error_fails_and_says_what_truing_would_bring(tmp_path: Path) -> None:
+    found, a = told(written(tmp_path, e=0.040, phi=96.0, noise=0.5))
+    assert "fail" == verdict(found)
+    assert a.move is not None
+    assert a.move.amount == pytest.approx(0.040, abs=0.0003)
+    true, _ = told(written(tmp_path, e=0.0, noise=0.5))
+    assert isinstance(true.against, Against)
+    then = a.move.then * a.answers[0].value
+    assert true.against.answers[0].value == pytest.approx(then, abs=1.0 * ARCSEC)  # the same wheel on its own axis
+    assert a.move.then < a.move.most < 0.1
+    assert f"40.0 um towards tooth {a.move.tooth}" in said(found)
+
+
+def test_without_the_instruments_uncertainty_nothing_is_judged(tmp_path: Path) -> None:
+    found, a = told(written(tmp_path, e=0.003), instrument=None)
+    assert "open" == verdict(found) and a.answers[0].u is None
+    assert "judged with --instrument" in said(found)
+
+
+def test_the_instruments_uncertainty_is_a_guard_band(tmp_path: Path) -> None:
+    file = written(tmp_path, e=0.0175, phi=30.0, noise=0.3)
+    _, a = told(file)
+    limit = a.answers[0].plan.stack.high
+    assert limit is not None
+    gap = (limit - a.answers[0].value) / ARCSEC
+    assert 0.0 < gap < 10.0
+    assert ["pass", "warn"] == [verdict(told(file, instrument=u * ARCSEC)[0]) for u in (0.2, 8.0 * gap)]
+
+
+def test_a_drifting_file_that_is_open_gives_no_verdict_and_no_owner(tmp_path: Path) -> None:
+    file = written(tmp_path, e=0.003)
+    lines = file.read_text().splitlines()
+    slipped = [lines[0]] + [
+        ",".join([*line.split(",")[:3], f"{float(line.split(',')[3]) + (300.0 if i > 70 else 0.0):.3f}"])
+        for i, line in enumerate(lines[1:])
+    ]
+    file.write_text("\n".join(slipped) + "\n")
+    found, _ = told(file)
+    assert "open" == found.reduced.verdict == verdict(found)
+    assert "no owner is named while the test itself is open" in said(found)
+
+
+OWNERS = {"eccentric": "op 40, holding", "divided": "op 40, dividing"}
+
+
+@pytest.mark.parametrize("truth", OWNERS)
+def test_both_flanks_tell_a_holding_from_a_division(tmp_path: Path, truth: str) -> None:
+    """Twenty wheels, each with one setup out of hand and the other as planned, at random angles: all are named right."""
+    right = 0
+    assert truth in OWNERS
+    for seed in range(20):
+        rng = random.Random(100 + seed)
+        small, large = rng.uniform(0.0, 0.002), rng.uniform(0.030, 0.040)
+        e, arc = (large, small) if truth == "eccentric" else (small, large)
+        file = written(
+            tmp_path, e=e, phi=rng.uniform(0, 360), divided=arc / RADIUS / ARCSEC, at=rng.uniform(0, 360), seed=seed
+        )
+        _, a = told(file)
+        explained = a.waves[0].explained
+        assert explained is not None and explained.beyond < 0.05
+        named = [o.name for o in explained.owners if o.odds > 0.05]
+        right += explained.owners[0].name == OWNERS[truth] if truth == "divided" else all("holding" in n for n in named)
+    assert 20 == right
+
+
+def test_one_flank_does_not_tell_them_apart_and_says_so(tmp_path: Path) -> None:
+    found, a = told(written(tmp_path, e=0.010, phi=10.0, directions=("forward",)))
+    explained = a.waves[0].explained
+    assert explained is not None and explained.beyond < 0.05 and not explained.told_apart
+    assert "not told apart: write known directions (high_at) into the plan" in said(found)
+
+
+def test_a_job_without_such_a_requirement_is_told_what_to_write(tmp_path: Path) -> None:
+    text = "\n".join(
+        line for line in JOB.read_text(encoding="utf-8").splitlines()
+        if not any(f"what: {figure}" in line for figure in ("index-within", "cumulative-pitch", "on-workpiece"))
+    )  # fmt: skip
+    found = read_back(read_job_text(text, "job.yaml"), written(tmp_path, e=0.003))
+    assert "open" == verdict(found)
+    assert "no index or pitch figure of wheel.teeth is required" in said(found)
+
+
+def test_the_command_ends_with_the_verdict_and_json_has_the_plan(tmp_path: Path) -> None:
+    def run(file: Path, *more: str) -> subprocess.CompletedProcess[str]:
+        command = [sys.executable, "-m", "setupcheck", "readings", str(JOB), str(file), *more]
+        return subprocess.run(command, capture_output=True, text=True, check=False)
+
+    small, large = written(tmp_path, e=0.003), tmp_path / "large.csv"
+    large.write_text(written(tmp_path, e=0.060).read_text())
+    small = written(tmp_path, e=0.003)
+    assert [0, 1, 3] == [
+        run(small, "--instrument", "1arcsec").returncode,
+        run(small).returncode,
+        run(large, "--instrument", "1arcsec").returncode,
+    ]
+    done = run(large, "--instrument", "1arcsec", "--diameter", "200", "--json")
+    plan = json.loads(done.stdout)["plan"]
+    assert ("fail", 24, 72) == (plan["verdict"], plan["places_read"], plan["places"])
+    assert plan["waves"][0]["owners"][0]["odds"] > 0.5
+    text = run(large, "--instrument", "1arcsec", "--diameter", "200")
+    assert "on a workpiece of 200.0 mm diameter the range is" in text.stdout
+    assert all(len(line) <= 80 for line in text.stdout.splitlines())
+    for option, wrong, says in (
+        ("--instrument", "1,5 arcsec", "Write a point"),
+        ("--instrument", "2", "unit"),
+        ("--diameter", "0", "no size of a workpiece"),
+    ):
+        refused = run(small, option, wrong)
+        assert 2 == refused.returncode and says in refused.stderr and "Traceback" not in refused.stderr
+
+
+def test_holes_and_spur_gears_are_set_against_their_own_figures(tmp_path: Path) -> None:
+    for name, of, figure in (
+        ("index-plate", "plate.holes", "index-within"),
+        ("spur-gear-on-mandrel", None, "cumulative-pitch"),
+    ):
+        job = shipped(f"jobs/{name}.yaml")
+        found = read_back(job, written(tmp_path, divided=4.0, count=12), of=of, instrument=ONE)
+        assert isinstance(found.against, Against), found.against
+        assert found.against.answers[0].plan.stack.require.what == figure
+        assert as_data(found)["plan"]["verdict"] in ("pass", "warn", "fail")  # type: ignore[index]
