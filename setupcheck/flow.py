@@ -131,10 +131,10 @@ def read_back(
     Raises: JobError; SetupcheckError for the readings.
     """
     from setupcheck.division.readings import read_test
-    from setupcheck.quantities.division_test import reduced, tested
+    from setupcheck.quantities.division_test import reduced, teeth_of
 
     loaded = job if isinstance(job, LoadedJob) else load_job(job)
-    teeth = tested(walk(loaded), of)
+    teeth = teeth_of(walk(loaded), of)
     found = read_test(readings, progress=progress)
     return ReadBack(loaded, teeth, reduced(found, teeth, turns_with_work=turns_with_work), found.file)
 
