@@ -35,9 +35,9 @@ from setupcheck.shipped import shipped
 if TYPE_CHECKING:
     from setupcheck.division.results import Reduced
     from setupcheck.quantities.against import Against
-    from setupcheck.quantities.division_test import Tested
     from setupcheck.quantities.own_values import RecordUse
     from setupcheck.quantities.remedies import Remedy
+    from setupcheck.quantities.teeth_tested import Tested
     from setupcheck.rulebook.house import House
 
 
@@ -161,11 +161,11 @@ def read_back(
     """
     from setupcheck.division.readings import read_test
     from setupcheck.quantities.against import against
-    from setupcheck.quantities.division_test import reduced, tested
+    from setupcheck.quantities.teeth_tested import reduced, teeth_of
 
     loaded = job if isinstance(job, LoadedJob) else load_job(job)
     floor, book = prepare(loaded)
-    teeth = tested(floor, of)
+    teeth = teeth_of(floor, of)
     found = read_test(readings, progress=progress)
     test = reduced(found, teeth, turns_with_work=turns_with_work)
     return ReadBack(loaded, teeth, test, against(book, floor, test, teeth.name, instrument=instrument), found.file)

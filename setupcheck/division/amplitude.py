@@ -96,7 +96,7 @@ def _ends(value: float, s_along: float, s_across: float) -> tuple[float, float]:
     top = value + 10.0 * (s_along + s_across)
     high = _root(lambda length: below(length) - 0.025, 0.0, top)
     low = 0.0 if below(0.0) <= 0.975 else _root(lambda length: below(length) - 0.975, 0.0, top)
-    return low, max(high, low)
+    return low, max(high, low, s_along, s_across)  # readings that happen to agree with nothing do not prove it
 
 
 def _root(falls: Callable[[float], float], low: float, high: float) -> float:

@@ -100,7 +100,7 @@ class Scatter:
 def scatter_of(points: Points, fit: Fit) -> Scatter:
     """Variance of a reading: both sources pooled where repeats explain the stations, else that of the stations alone."""
     pure, pure_nu = _pure_error(points, fit.terms)
-    mean = fit.square / fit.nu if fit.nu > 0 else math.nan
+    mean = fit.square / fit.nu if fit.nu > 0 else 0.0
     lack_nu = fit.nu - pure_nu
     if pure_nu < 1:
         return Scatter(mean, fit.nu, None, 0, None, 0.0)

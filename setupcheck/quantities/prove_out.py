@@ -239,13 +239,14 @@ def move(floor: Floor, proof: Proof, ring: fit.Ring, uncertainty: float, planned
     e, about = ring.eccentricity, proof.given.about
     if e <= uncertainty:
         return f"Not proved: {floor.fine(e)} is within the uncertainty of {floor.fine(uncertainty)}. Leave the blank where it is."
+    told = about or "the surface it was read about"
     gap = fit.gap_at(ring.direction, proof.count)
     across = fit.gap_at(ring.direction + math.pi, proof.count)
     name, _ = machine_of(floor.loaded, next(s for s in floor.loaded.job.setups if s.op == proof.op))
     first = "Within the plan; to better it, move" if planned is not None and e + uncertainty <= planned else "Move"
     return (
         f"{first} the blank {floor.fine(e)} on {name or 'the machine'} in the direction of gap {_gap(gap, proof.count)}: a "
-        f"dial on {about} shows {floor.fine(2.0 * e)} there, high at gap {_gap(across, proof.count)}; bring it to nothing "
+        f"dial on {told} shows {floor.fine(2.0 * e)} there, high at gap {_gap(across, proof.count)}; bring it to nothing "
         "before the finishing pass."
     )
 

@@ -42,7 +42,7 @@ def remedy_in_words(found: Review, finding: Finding) -> str:
         told = _worked_out(found.remedies[finding.key], inches=found.book.inches)
         return told or _last_resort(found, finding)
     if finding.op in finished(found.loaded.job) and not finding.rule.startswith(MEASURING):
-        return f"Op {finding.op} is done, so only its like can be made so next time: {finding.remedy}"
+        return f"Op {finding.op} is done; for the next part: {finding.remedy}"
     return finding.remedy
 
 

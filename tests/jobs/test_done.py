@@ -125,9 +125,7 @@ def test_dials_of_what_is_done_are_no_longer_gated_in_the_report_and_stay_in_the
 
 
 def test_a_finding_at_a_setup_that_is_done_says_so() -> None:
-    assert "Op 40 is done, so only its like can be made so next time: True it again" in printed(
-        done(40, (PUSHED, WORSE))
-    )
+    assert "Op 40 is done; for the next part: True it again" in printed(done(40, (PUSHED, WORSE)))
 
 
 def test_a_measured_value_of_the_setup_at_hand_is_usual_and_a_later_one_is_told() -> None:

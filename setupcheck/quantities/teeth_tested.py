@@ -33,7 +33,7 @@ class Tested:
     missing: tuple[str, ...]
 
 
-def tested(floor: Floor, of: str | None = None) -> Tested:
+def teeth_of(floor: Floor, of: str | None = None) -> Tested:
     """The teeth a test is of: those named, else the wheel of the mesh, else the only ones of the job.
 
     Raises: SetupcheckError where there are none, or more than one to choose from.
@@ -43,7 +43,7 @@ def tested(floor: Floor, of: str | None = None) -> Tested:
         f"{part}.{name}": node
         for part, parts in job.parts.items()
         for name, node in parts.surfaces.items()
-        if isinstance(node, Toothing | Pattern)
+        if isinstance(node, Toothing | Pattern) and node.count > 1
     }
     wheel = floor.loaded.ref(job.mesh.wheel) if job.mesh is not None else None
     name = of or (f"{wheel.part}.{wheel.surface}" if wheel is not None else None)
