@@ -211,7 +211,7 @@ def chain_saves(chain: Chain) -> float:
 
 
 def chain_says(floor: Floor, chain: Chain) -> str | None:
-    """Which device against which, what the dial then shows and what it saves; None where it saves less than WORTH."""
+    """Which device against which, what the dial then shows and what it saves; None below WORTH. Source: opposite.chain."""
     if chain.saves < WORTH:
         return None
     (first, large), (second, small) = chain.first, chain.second
