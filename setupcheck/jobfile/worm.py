@@ -158,6 +158,7 @@ class Mesh(Shop):
     contact  `exact`: contact, transmission error and insert from the exact gap, which takes a second more
     error_budget  transmission error that the cut may leave, along the reference circle, end to end over one pitch [mm]
     mark     what blue showed on the finished wheel
+    eccentric  throw of an eccentric that sets the centre distance, distance of its two axes [mm]
     """
 
     wheel: str
@@ -171,6 +172,7 @@ class Mesh(Shop):
     contact: Literal["exact"] | None = None
     error_budget: Budget | None = None
     mark: Mark | None = None
+    eccentric: Size | None = None
 
     @property
     def ball_used(self) -> float | None:

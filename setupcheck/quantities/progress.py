@@ -9,6 +9,7 @@ from setupcheck.errors import JobError
 from setupcheck.jobfile.models import Dimension, Flat
 from setupcheck.jobfile.reading import LoadedJob
 from setupcheck.jobfile.setups import Cut, Job, Join, Setup, Spacer, Stop
+from setupcheck.notation import show
 from setupcheck.quantities.book import Open, OutOfRange, Quantity
 from setupcheck.quantities.finished import finished, to_come
 from setupcheck.quantities.gates import origins, reaches
@@ -33,7 +34,7 @@ class Adjuster:
     causes  begin of the paths of causes that it takes with it, for adjusters without a size
     """
 
-    op: int
+    op: int  # 0: in the housing, after all of them
     words: str
     path: str
     moved: Floor | None = None
@@ -56,7 +57,18 @@ def adjusters(floor: Floor) -> tuple[Adjuster, ...] | None:
     for setup in to_come(loaded.job):
         found += _of_join(loaded, setup) if setup.join is not None else _of_cuts(loaded, setup)
         found += _of_hold(loaded, setup)
-    return tuple(found)
+    return (*found, *_of_the_housing(loaded))
+
+
+def _of_the_housing(loaded: LoadedJob) -> Iterator[Adjuster]:
+    """An eccentric that sets the centre distance: it stays open to the last. At most by its throw, less beside dead centre."""
+    mesh = loaded.job.mesh
+    if mesh is None or mesh.eccentric is None or not isinstance(mesh.centre_distance, Dimension):
+        return
+    apart = mesh.model_copy(update={"centre_distance": _longer(mesh.centre_distance)})
+    moved = _walked(loaded, loaded.job.model_copy(update={"mesh": apart}))
+    most = show(mesh.eccentric, *(("in", 4) if loaded.job.units == "in" else ("mm", 3)))
+    yield Adjuster(0, f"the eccentric of the housing, by {most} of centre distance at most", "mesh.eccentric", moved)
 
 
 def _walked(loaded: LoadedJob, job: Job) -> Floor | None:

@@ -35,6 +35,7 @@ NOT_LOOKED_AT: Mapping[str, Mapping[str, str]] = {
         "contact": "contact {said} (of a wheel cut by a single point only)",
         "error_budget": "error budget {said} (held against `contact: exact` only)",
         "mark": "mark of blue ({said})",
+        "eccentric": "throw of the eccentric {said} (told as still to move, with `done`)",
     },
     "Cutter": {
         "tip_radius": "tip radius {said}",
@@ -128,7 +129,8 @@ class _Looked:
 
 def _looked(loaded: LoadedJob) -> _Looked:
     """Entries that count in this job, though not in every job."""
-    return _Looked(frozenset((*_of_joints(loaded), *_of_the_wheel(loaded), *_of_heads(loaded), *_of_limits(loaded))))
+    done = ("mesh.eccentric",) if loaded.job.done is not None else ()
+    return _Looked(frozenset((*done, *_of_joints(loaded), *_of_the_wheel(loaded), *_of_heads(loaded), *_of_limits(loaded))))
 
 
 _OF_A_FIT = ("joint", "friction", "smoothing", "must_carry", "serves_at", "growth_at", "pairs")

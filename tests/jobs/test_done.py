@@ -12,6 +12,7 @@ from setupcheck.jobfile.reading import read_job_text
 from setupcheck.quantities.book import Known
 from setupcheck.report.json import as_json
 from setupcheck.report.text import as_text
+from setupcheck.shipped import shipped
 from tests.jobs.test_measuring import changed
 
 PUSHED = "rests: pushed, runout: 3 um}"
@@ -90,6 +91,21 @@ def test_when_all_is_done_nothing_is_left_and_it_says_so() -> None:
     text = done(70, (PUSHED, WORSE))
     assert still(text, "run-out") == "nothing that is still to come moves it"
     assert "nothing that is still to come moves it; measure closer what is done, or ask for less" in printed(text)
+
+
+def test_an_eccentric_of_the_housing_stays_open_to_the_last_and_moves_the_backlash_alone() -> None:
+    text = shipped("jobs/rotator-worm-wheel.yaml").read_text(encoding="utf-8")
+    for old, new in (("between: [5 um, 125 um]", "between: [30 um, 100 um]"), ("setups:\n", "done: 70\nsetups:\n")):
+        assert text.count(old) == 1
+        text = text.replace(old, new)
+    distance = "centre_distance: 66.000 ±0.010"
+    with_one = text.replace(distance, f"{distance}, eccentric: 0.4 mm")
+    assert still(text, "backlash.") == "nothing that is still to come moves it"
+    assert still(with_one, "backlash.") == (
+        "the eccentric of the housing, by 0.400 mm of centre distance at most (mesh.eccentric)"
+    )
+    assert "throw of the eccentric 0.4 mm" in printed(with_one.replace("done: 70\n", ""))  # told as not looked at
+    assert "throw of the eccentric" not in printed(with_one)
 
 
 def test_a_requirement_that_passes_and_lost_nothing_is_not_listed() -> None:
