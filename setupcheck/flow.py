@@ -34,8 +34,8 @@ from setupcheck.shipped import shipped
 
 if TYPE_CHECKING:
     from setupcheck.division.results import Reduced
-    from setupcheck.quantities.division_test import Tested
     from setupcheck.quantities.remedies import Remedy
+    from setupcheck.quantities.teeth_read import TeethRead
     from setupcheck.rulebook.house import House
 
 
@@ -111,7 +111,7 @@ class ReadBack:
     """A division test read back: the job, the teeth it is of, what it says, and the name of its file."""
 
     loaded: LoadedJob
-    of: Tested
+    of: TeethRead
     reduced: Reduced
     file: str
 
@@ -131,7 +131,7 @@ def read_back(
     Raises: JobError; SetupcheckError for the readings.
     """
     from setupcheck.division.readings import read_test
-    from setupcheck.quantities.division_test import reduced, teeth_of
+    from setupcheck.quantities.teeth_read import reduced, teeth_of
 
     loaded = job if isinstance(job, LoadedJob) else load_job(job)
     teeth = teeth_of(walk(loaded), of)

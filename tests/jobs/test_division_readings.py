@@ -12,8 +12,8 @@ from typer.testing import CliRunner
 from setupcheck.cli.main import app
 from setupcheck.errors import SetupcheckError
 from setupcheck.flow import read_back
-from setupcheck.quantities.division_test import teeth_of
 from setupcheck.quantities.route import walk
+from setupcheck.quantities.teeth_read import teeth_of
 
 from ..published.division_files import Shop, as_circle, as_deviations, pitch_off, rows, stations
 
