@@ -37,7 +37,7 @@ if TYPE_CHECKING:
     from setupcheck.quantities.against import Against
     from setupcheck.quantities.own_values import RecordUse
     from setupcheck.quantities.remedies import Remedy
-    from setupcheck.quantities.teeth_tested import Tested
+    from setupcheck.quantities.teeth_read import TeethRead
     from setupcheck.rulebook.house import House
 
 
@@ -137,7 +137,7 @@ class ReadBack:
     """A division test read back: the job, the teeth it is of, what it says, how that stands to the plan, and its file's name."""
 
     loaded: LoadedJob
-    of: Tested
+    of: TeethRead
     reduced: Reduced
     against: Against | Open
     file: str
@@ -161,7 +161,7 @@ def read_back(
     """
     from setupcheck.division.readings import read_test
     from setupcheck.quantities.against import against
-    from setupcheck.quantities.teeth_tested import reduced, teeth_of
+    from setupcheck.quantities.teeth_read import reduced, teeth_of
 
     loaded = job if isinstance(job, LoadedJob) else load_job(job)
     floor, book = prepare(loaded)

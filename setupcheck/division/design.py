@@ -10,7 +10,7 @@ Sources: linear least squares; sampling (aliasing); derived here.
 from __future__ import annotations
 
 import math
-from collections.abc import Iterator, Sequence
+from collections.abc import Iterable, Iterator, Sequence
 
 import numpy as np
 from numpy.typing import NDArray
@@ -199,7 +199,8 @@ def design(points: Points, asked: Sequence[float]) -> Design:
     if arc and sums.told(chosen, slope) > RESOLVED:
         chosen.append(slope)
         unknowns += 1
-    repeated = _repeated(points)
+    at = places(points, whole=comes_round(asked))
+    repeated = len(np.unique(at)) < len(at)
     left_out: list[tuple[Term, str]] = []
     for place, wave in enumerate(waves):
         spare = 0 if arc else SPARE if place > 0 else 1
@@ -250,7 +251,7 @@ def _taken_for(sums: Sums, chosen: Sequence[Term], wave: Term) -> tuple[float, .
 
 def _stations(points: Points, asked: Sequence[float]) -> tuple[int, bool]:
     """(different stations, whether all lie within half a turn)."""
-    whole = all(float(h).is_integer() for h in asked)
+    whole = comes_round(asked)
     at = np.unique(np.round(np.remainder(points.theta, math.tau) if whole else points.theta, 9))
     round_ = np.unique(np.round(np.remainder(points.theta, math.tau), 9))
     if len(round_) > 1 and math.tau - round_[-1] + round_[0] < 2e-9:
@@ -259,14 +260,23 @@ def _stations(points: Points, asked: Sequence[float]) -> tuple[int, bool]:
     return len(at), gap > math.pi
 
 
-def cells(points: Points) -> NDArray[np.int64]:
+def places(points: Points, *, whole: bool) -> Reals:
+    """Stations that are told apart [rad], full turns taken off where every wave comes round with the work (`whole`)."""
+    at = np.round(np.remainder(points.theta, math.tau) if whole else points.theta, 8)
+    if whole:
+        at[math.tau - at < 2e-8] = 0.0
+    return np.asarray(at)
+
+
+def comes_round(harmonics: Iterable[float]) -> bool:
+    """Whether all waves are whole numbers a turn: a worm of two starts may need two turns of the wheel.
+
+    >>> comes_round([1.0, 72.0]), comes_round([1.0, 22.5])
+    (True, False)
+    """
+    return all(float(h).is_integer() for h in harmonics)
+
+
+def cells(points: Points, *, whole: bool) -> NDArray[np.int64]:
     """Number of each row's station."""
-    at = np.round(np.remainder(points.theta, math.tau), 8)
-    at[math.tau - at < 2e-8] = 0.0
-    return np.asarray(np.unique(at, return_inverse=True)[1]).astype(np.int64)
-
-
-def _repeated(points: Points) -> bool:
-    at = np.round(np.remainder(points.theta, math.tau), 8)
-    at[math.tau - at < 2e-8] = 0.0
-    return len(np.unique(at)) < len(at)
+    return np.asarray(np.unique(places(points, whole=whole), return_inverse=True)[1]).astype(np.int64)

@@ -13,7 +13,7 @@ from collections.abc import Sequence
 import numpy as np
 from numpy.typing import NDArray
 
-from setupcheck.division.design import Sums, Term, _solve, blocks, cells
+from setupcheck.division.design import Sums, Term, _solve, blocks, cells, comes_round
 from setupcheck.division.points import Points
 from setupcheck.physics.student_t import LARGEST_NU, f_above
 from setupcheck.record import record
@@ -125,7 +125,7 @@ def _pure_error(points: Points, terms: Sequence[Term]) -> tuple[float, int]:
 
     Both directions of a station count as one place: what a tooth does of its own it does both ways.
     """
-    group = cells(points)
+    group = cells(points, whole=comes_round(t.harmonic for t in terms if t.kind == "wave"))
     number = int(group.max()) + 1
     times = np.bincount(group, minlength=number)
     if number == len(points):

@@ -12,7 +12,7 @@ from numpy.typing import NDArray
 from setupcheck.division import doubts
 from setupcheck.division.amplitude import Length, length_of, t_at
 from setupcheck.division.columns import ARCSEC
-from setupcheck.division.design import Design, Term, columns, design
+from setupcheck.division.design import Design, Term, columns, comes_round, design, places
 from setupcheck.division.eccentric import Wheel, eccentric
 from setupcheck.division.fit import SURE, Fit, Scatter, fitted, scatter_of
 from setupcheck.division.points import Points, Prepared, gap_of, prepare, without
@@ -78,6 +78,11 @@ def reduce(
     turns_with_work  stations named `angle` are turns of the work, as for an instrument that rides on it
     Raises: SetupcheckError where there is nothing to reduce.
     """
+    if turns_with_work and readings.kind == "tooth":
+        raise SetupcheckError(
+            f"{readings.file}: stations are teeth, which are places of the work and do not turn with it. Leave "
+            "--turns-with-work away, or write turned_deg"
+        )
     wheel = Wheel(count, radius, pressure_angle, start, turn)
     turned = readings.kind == "turned" or (turns_with_work and readings.kind == "angle")
     ready = prepare(readings, count=count, worm_ratio=worm_ratio, start=start, turn=turn)
@@ -116,7 +121,7 @@ def reduce(
         range=_range(found),
         range_without_first=_range(found, centred=True) if Term("wave", 1.0) in found.fit.terms else None,
         drift=_single(found, Term("drift")),
-        closure=_closure(found.points),
+        closure=_closure(found.points, whole=comes_round(names)),
         reversal=_single(found, Term("reversal")),
         no_reversal=_no_reversal(found.plan),
         repeatability=repeatability(ready.points, _zeros(found) if readings.how == "reading" else None),
@@ -323,11 +328,12 @@ def _no_reversal(plan: Design) -> str:
     }[plan.reversal]
 
 
-def _closure(points: Points) -> float | None:
+def _closure(points: Points, *, whole: bool) -> float | None:
     """Last less first reading of the station that begins, in one run and direction where it can be."""
     order = np.argsort(points.t, kind="stable")
     first = order[0]
-    same = np.abs(np.remainder(points.theta - points.theta[first] + math.pi, math.tau) - math.pi) < 1e-8
+    at = places(points, whole=whole)
+    same = np.abs(at - at[first]) < 2e-8
     same &= points.run == points.run[first]
     for more in (points.direction == points.direction[first], np.ones(len(points), bool)):
         again = [i for i in order.tolist() if same[i] and more[i]]

@@ -130,7 +130,9 @@ class _Looked:
 def _looked(loaded: LoadedJob) -> _Looked:
     """Entries that count in this job, though not in every job."""
     done = ("mesh.eccentric",) if loaded.job.done is not None else ()
-    return _Looked(frozenset((*done, *_of_joints(loaded), *_of_the_wheel(loaded), *_of_heads(loaded), *_of_limits(loaded))))
+    return _Looked(
+        frozenset((*done, *_of_joints(loaded), *_of_the_wheel(loaded), *_of_heads(loaded), *_of_limits(loaded)))
+    )
 
 
 _OF_A_FIT = ("joint", "friction", "smoothing", "must_carry", "serves_at", "growth_at", "pairs")

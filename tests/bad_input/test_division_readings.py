@@ -191,3 +191,24 @@ def test_the_template_works_as_it_is(tmp_path: Path) -> None:
     assert found.eccentric is not None
     assert 0.008 == pytest.approx(found.eccentric.amount.value, abs=0.0002)
     assert all(len(line) <= 130 for line in template().splitlines())
+
+
+def test_teeth_are_no_turns_of_the_work(tmp_path: Path) -> None:
+    with pytest.raises(SetupcheckError, match="Leave --turns-with-work away, or write turned_deg"):
+        reduced(tmp_path, "tooth,deviation_arcsec\n1,0\n2,1\n", turns_with_work=True)
+
+
+def test_a_worm_of_two_starts_on_an_odd_wheel_comes_round_in_two_turns(tmp_path: Path) -> None:
+    # 45 teeth, 2 starts: 22.5 turns of the worm, so that 360 deg is not the place of the worm that 0 deg was
+    turns = [6.0 * k for k in range(121)]
+    wave = [
+        3.0 * math.cos(22.5 * math.radians(a)) + 10.0 * math.cos(math.radians(a)) + 0.2 * (k * k % 7 - 2)
+        for k, a in enumerate(turns)
+    ]
+    passes = [(a, d, "forward") for a, d in zip(turns, wave, strict=True)]
+    passes += [(a, d + 4.0, "reverse") for a, d in reversed(list(zip(turns, wave, strict=True)))]
+    text = "angle_deg,deviation_arcsec,direction\n" + "".join(f"{a},{d:.4f},{way}\n" for a, d, way in passes)
+    found = reduced(tmp_path, text, count=45, worm_ratio=22.5, radius=30.0)
+    assert found.worm is not None
+    assert 3.0 == pytest.approx(math.degrees(found.worm.length.value) * 3600.0, abs=0.15)
+    assert 121 == found.stations

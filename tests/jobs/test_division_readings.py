@@ -13,7 +13,7 @@ from setupcheck.cli.main import app
 from setupcheck.errors import SetupcheckError
 from setupcheck.flow import read_back
 from setupcheck.quantities.route import walk
-from setupcheck.quantities.teeth_tested import teeth_of
+from setupcheck.quantities.teeth_read import teeth_of
 
 from ..published.division_files import Shop, as_circle, as_deviations, pitch_off, rows, stations
 

@@ -14,7 +14,7 @@ from setupcheck.record import record
 
 
 @record
-class Tested:
+class TeethRead:
     """The teeth or holes of a test.
 
     name  as in `of` of a requirement;  count, radius [mm], pressure_angle [rad], start [rad], turn  as the ledger has them
@@ -33,7 +33,7 @@ class Tested:
     missing: tuple[str, ...]
 
 
-def teeth_of(floor: Floor, of: str | None = None) -> Tested:
+def teeth_of(floor: Floor, of: str | None = None) -> TeethRead:
     """The teeth a test is of: those named, else the wheel of the mesh, else the only ones of the job.
 
     Raises: SetupcheckError where there are none, or more than one to choose from.
@@ -70,7 +70,7 @@ def teeth_of(floor: Floor, of: str | None = None) -> Tested:
     missing = ["worm.starts"] if own and starts is None else []
     if pattern.pressure_angle is None and isinstance(known[name], Toothing):
         missing.append("worm.pressure_angle" if own else f"parts.{part}.surfaces.{surface}.pressure_angle")
-    return Tested(
+    return TeethRead(
         name,
         pattern.count,
         pattern.radius,
@@ -94,7 +94,7 @@ def _head_ratio(floor: Floor, part: str, surface: str) -> float | None:
     return None
 
 
-def reduced(readings: Readings, of: Tested, *, turns_with_work: bool = False) -> Reduced:
+def reduced(readings: Readings, of: TeethRead, *, turns_with_work: bool = False) -> Reduced:
     """The readings reduced for these teeth.  Raises: SetupcheckError."""
     return reduce(
         readings,
