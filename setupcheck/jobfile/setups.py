@@ -5,6 +5,7 @@ from typing import Annotated, Literal, Self
 
 from pydantic import BeforeValidator, Field, ValidationInfo, model_validator
 
+from setupcheck.jobfile.dividing import Divide
 from setupcheck.jobfile.heating import Heat
 from setupcheck.jobfile.models import (
     Checked,
@@ -211,40 +212,6 @@ class Head(Shop):
     sine_bar: Size | None = None
     blocks: Dim | None = None
     mid_plane: MidPlane | None = None
-
-
-class Waves(Shop):
-    """Systematic division errors, each an amplitude ±."""
-
-    once_per_turn: AngleBound | None = None
-    twice_per_turn: AngleBound | None = None
-    once_per_crank: AngleBound | None = None
-
-
-class Divide(Shop):
-    """How the circle is divided, and what each way costs. Amplitudes and bounds are ±."""
-
-    by: Literal[
-        "hole-circle",
-        "direct",
-        "vernier",
-        "readout",
-        "theodolite",
-        "polygon",
-        "face-teeth",
-        "sine-bar",
-        "x-y",
-        "rotary-table",
-    ]
-    circle: Whole | None = Field(default=None, ge=1, le=400)
-    wheel: Waves | None = None
-    worm: Waves | None = None
-    setting: AngleBound | None = None
-    clamp: AngleBound | None = None
-    step: Angle | None = None
-    drift: AngleBound | None = None
-    faces: Literal["one", "two"] | None = None
-    order: Literal["in-turn", "spread"] | None = None
 
 
 class Scatter(Shop):

@@ -110,35 +110,44 @@ class Draws:
                 total -= _single(a.imag - b.imag) * x.imag
         return total
 
-    def scatter(self, scatter: Scatter, pattern: Pattern) -> Reals:
-        """Per-place values of one scatter as lengths [mm], uniform within its bound, shape (trials, count)."""
+    def scatter(self, scatter: Scatter, pattern: Pattern, *, outward: bool = False) -> Reals:
+        """Per-place values of one scatter as lengths [mm], uniform within its bound, shape (trials, count).
+
+        outward  the part of a coordinate that lies outwards, of the same draws as the part round the circle
+        """
+        shares = scatter.outward if outward else scatter.around
         bound = scatter.bound * (pattern.radius if scatter.along == "angle" else 1.0)
         rng = self.stream(scatter.cause.identity)
-        drawn = np.empty((pattern.count, self.trials), dtype=np.float32)
-        for place in drawn:  # one by one, while its values are in the processor's cache
+        draws = max(scatter.groups) + 1 if scatter.groups else pattern.count
+        drawn = np.empty((draws, self.trials), dtype=np.float32)
+        for j, place in enumerate(drawn):  # one by one, while its values are in the processor's cache
             rng.random(out=place, dtype=np.float32)
             place -= np.float32(0.5)
-            place *= _single(2.0 * bound)
-        return drawn.T
+            if scatter.either:
+                np.copysign(np.float32(0.5), place, out=place)
+            place *= _single(2.0 * bound * (shares[j] if shares else 1.0))
+        return drawn[list(scatter.groups)].T if scatter.groups else drawn.T
 
     def arcs(self, pattern: Pattern) -> Reals:
         """Arc errors of all places from dividing alone [mm], shape (trials, count)."""
         found = self._arcs.get(id(pattern))
         if found is None:
-            each = [self.scatter(s, pattern) for s in pattern.scatter if s.along != "radial"]
+            each = [self.scatter(s, pattern) for s in pattern.scatter if s.goes_round]
             waves = [self.cause(p.cause) for p in pattern.periodic]
-            drifts = [self.cause(c).real for c in pattern.drift]
-            found = self._arcs[id(pattern)] = (pattern, teeth.division_arcs(pattern, waves, drifts, each, self.trials))
+            shaped = [self.cause(s.cause).real for s in pattern.shaped]
+            found = self._arcs[id(pattern)] = (pattern, teeth.division_arcs(pattern, waves, shaped, each, self.trials))
         return found[1]
 
     def radials(self, pattern: Pattern) -> Reals:
-        """Radial scatter of all places [mm], shape (trials, count)."""
+        """Radial errors of all places, known and scattered [mm], shape (trials, count)."""
         found = self._radials.get(id(pattern))
         if found is None:
             total = np.zeros((pattern.count, self.trials), dtype=np.float32).T
             for s in pattern.scatter:
-                if s.along == "radial":
-                    total += self.scatter(s, pattern)
+                if s.goes_outward:
+                    total += self.scatter(s, pattern, outward=True)
+            if pattern.outwards:
+                total += np.asarray(pattern.outwards, dtype=np.float32)
             found = self._radials[id(pattern)] = (pattern, total)
         return found[1]
 

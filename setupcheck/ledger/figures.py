@@ -152,7 +152,7 @@ class OverATurn:
     signed: bool = True
 
     def _outwards(self) -> list[Scatter]:
-        return [s for s in self.pattern.scatter if s.along == "radial"] if self.pattern is not None else []
+        return [s for s in self.pattern.scatter if s.goes_outward] if self.pattern is not None else []
 
     def base(self) -> float:
         return real_pushes(self.account)[0]
@@ -273,7 +273,7 @@ class Tooth:
 
     def base(self) -> float:
         gain = teeth.gains(self.pattern, stepwise=self.stepwise, flank=False)
-        rounding = teeth.rounding_figure(self.pattern, stepwise=self.stepwise)
+        rounding = teeth.rounding_figure(self.pattern, stepwise=self.stepwise, deeper=self._deeper())
         return self.factor * rounding + vector_pushes(self._worse(), self.factor * gain.offset)[0]
 
     def pushes(self) -> list[Push]:
@@ -282,17 +282,16 @@ class Tooth:
             Push(p.cause, 0.0, self.factor * gain.wave[p.harmonic] * (p.cause.bound + abs(p.cause.mean)))
             for p in self.pattern.periodic
         ]
-        division += [
-            Push(s.cause, 0.0, self.factor * gain.scatter * self._arc(s.bound, s.along)) for s in self.pattern.scatter
-        ]
-        division += [Push(c, 0.0, self.factor * gain.drift * c.bound) for c in self.pattern.drift]
+        for s in self.pattern.scatter:
+            own = teeth.scatter_gain(s, self.pattern, stepwise=self.stepwise, deeper=self._deeper())
+            division.append(Push(s.cause, 0.0, self.factor * own))
+        for one in self.pattern.shaped:
+            own = self.pattern.radius * teeth.shape_gain(one.shape, stepwise=self.stepwise)
+            division.append(Push(one.cause, 0.0, self.factor * own * one.cause.bound))
         return merged(vector_pushes(self._worse(), self.factor * gain.offset)[1], [p for p in division if p.up > 0.0])
 
-    def _arc(self, bound: float, along: str) -> float:
-        """What a scatter of one place does to its arc; a gap cut deeper by r moves each flank by r tan(alpha)."""
-        return bound * {"angle": self.pattern.radius, "tangential": 1.0, "radial": self._deeper()}[along]
-
     def _deeper(self) -> float:
+        """What a gap cut deeper by r moves each of its flanks by, over r."""
         return math.tan(self.pattern.pressure_angle or 0.0) if self.flank else 0.0
 
     def undetermined(self) -> tuple[str, ...]:
@@ -310,7 +309,7 @@ class Tooth:
         return np.asarray(self._over_the_turn(draws) * self.factor)
 
     def _has_radial(self) -> bool:
-        return any(s.along == "radial" for s in self.pattern.scatter)
+        return bool(self.pattern.outwards) or any(s.goes_outward for s in self.pattern.scatter)
 
     def _over_the_turn(self, draws: Draws) -> Reals:
         """Range or largest step of the worse flank for all trials [mm]; figures of one ring share it."""
@@ -342,10 +341,12 @@ class ToothRunOut:
     signed: bool = False
 
     def base(self) -> float:
-        return vector_pushes(self.offset, 2.0 * self.factor)[0]
+        known = self.pattern.outwards
+        swing = self.factor * (max(known) - min(known)) if known else 0.0
+        return swing + vector_pushes(self.offset, 2.0 * self.factor)[0]
 
     def pushes(self) -> list[Push]:
-        own = [Push(s.cause, 0.0, 2.0 * self.factor * s.bound) for s in self.pattern.scatter if s.along == "radial"]
+        own = [Push(s.cause, 0.0, 2.0 * self.factor * s.bound) for s in self.pattern.scatter if s.goes_outward]
         return merged(vector_pushes(self.offset, 2.0 * self.factor)[1], own)
 
     def undetermined(self) -> tuple[str, ...]:

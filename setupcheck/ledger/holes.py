@@ -12,7 +12,7 @@ from numpy.typing import NDArray
 from setupcheck.ledger import teeth
 from setupcheck.ledger.account import Account
 from setupcheck.ledger.figures import Push, Reals, merged, real_pushes, vector_pushes
-from setupcheck.ledger.route import Pattern
+from setupcheck.ledger.route import Pattern, Scatter
 from setupcheck.record import record
 
 if TYPE_CHECKING:
@@ -41,10 +41,11 @@ class HolePosition:
         middle = (max(arcs) + min(arcs)) / 2.0 if self.turn is None else 0.0
         turn = (self.turn if self.turn is not None else Account()) * self.pattern.radius
         found = []
-        for number, arc in enumerate(arcs, 1):
+        known = self.pattern.outwards or (0.0,) * self.pattern.count
+        for number, (arc, out) in enumerate(zip(arcs, known, strict=True), 1):
             there = cmath.exp(1j * self.pattern.angle(number))
             moved = self.offset + self.pattern.radial * there + turn * (1j * there)
-            found.append(moved.plus_constant(1j * there * (arc - middle)))
+            found.append(moved.plus_constant(there * (out + 1j * (arc - middle))))
         return max(found, key=Account.largest)
 
     def base(self) -> float:
@@ -53,10 +54,10 @@ class HolePosition:
     def pushes(self) -> list[Push]:
         r = self.pattern.radius
         division = [Push(p.cause, 0.0, 2.0 * r * p.cause.bound) for p in self.pattern.periodic]
-        division += [
-            Push(s.cause, 0.0, 2.0 * s.bound * (r if s.along == "angle" else 1.0)) for s in self.pattern.scatter
-        ]
-        division += [Push(c, 0.0, 2.0 * r * c.bound) for c in self.pattern.drift]
+        for s in self.pattern.scatter:
+            largest = max(map(abs, s.around)) if s.around and s.along == "angle" else 1.0  # a coordinate counts in full
+            division.append(Push(s.cause, 0.0, 2.0 * s.bound * largest * (r if s.along == "angle" else 1.0)))
+        division += [Push(s.cause, 0.0, 2.0 * r * max(map(abs, s.shape)) * s.cause.bound) for s in self.pattern.shaped]
         return merged(vector_pushes(self._worst_hole(), 2.0)[1], division)
 
     def undetermined(self) -> tuple[str, ...]:
@@ -92,24 +93,42 @@ class HoleChord:
     signed: bool = False
 
     def base(self) -> float:
-        known = 2.0 * math.sin(math.pi / self.pattern.count) * abs(self.pattern.radial.known().real)
-        return known + math.cos(math.pi / self.pattern.count) * teeth.rounding_figure(self.pattern, stepwise=True)
+        n = self.pattern.count
+        radial = 2.0 * math.sin(math.pi / n) * self.pattern.radial.known().real
+        known = self.pattern.outwards
+        if not known:
+            return abs(radial) + math.cos(math.pi / n) * teeth.rounding_figure(self.pattern, stepwise=True)
+        arcs = [self.pattern.radius * r for r in self.pattern.rounding]
+        both = (known[j] + known[j - 1] for j in range(n))
+        steps = (arcs[j] - arcs[j - 1] for j in range(n))
+        outward, along = math.sin(math.pi / n), math.cos(math.pi / n)
+        return max(abs(radial + outward * b + along * s) for b, s in zip(both, steps, strict=True))
 
     def pushes(self) -> list[Push]:
-        n, r = self.pattern.count, self.pattern.radius
+        n = self.pattern.count
         tangential, radial = math.cos(math.pi / n), 2.0 * math.sin(math.pi / n)
         gain = teeth.gains(self.pattern, stepwise=True, flank=False)
         found = [Push(p.cause, 0.0, tangential * gain.wave[p.harmonic] * p.cause.bound) for p in self.pattern.periodic]
         for s in self.pattern.scatter:
-            reach = (
-                radial * s.bound
-                if s.along == "radial"
-                else 2.0 * tangential * s.bound * (r if s.along == "angle" else 1.0)
-            )
-            found.append(Push(s.cause, 0.0, reach))
-        found += [Push(c, 0.0, tangential * gain.drift * c.bound) for c in self.pattern.drift]
+            found.append(Push(s.cause, 0.0, self._scattered(s)))
+        for one in self.pattern.shaped:
+            steps = self.pattern.radius * teeth.shape_gain(one.shape, stepwise=True)
+            found.append(Push(one.cause, 0.0, tangential * steps * one.cause.bound))
         found += [Push(p.cause, 0.0, radial * p.size) for p in real_pushes(self.pattern.radial)[1]]
         return merged([p for p in found if p.up > 0.0])
+
+    def _scattered(self, scatter: Scatter) -> float:
+        """Most that what each hole draws for itself does to one distance [mm]."""
+        n = self.pattern.count
+        along, outward = math.cos(math.pi / n), math.sin(math.pi / n)
+        if scatter.along == "radial":
+            return 2.0 * outward * scatter.bound
+        if not scatter.outward:
+            return along * teeth.scatter_gain(scatter, self.pattern, stepwise=True, deeper=0.0)
+        each = list(zip(scatter.around, scatter.outward, strict=True))
+        first = [abs(outward * o - along * a) for a, o in each]
+        second = [abs(outward * o + along * a) for a, o in each]
+        return scatter.bound * max(first[j - 1] + second[j] for j in range(n))
 
     def undetermined(self) -> tuple[str, ...]:
         mine = [s.cause.missing for s in self.pattern.scatter if s.cause.law == "undetermined"]
@@ -140,15 +159,19 @@ class PitchCircle:
     signed: bool = True
 
     def base(self) -> float:
-        return 2.0 * real_pushes(self.pattern.radial)[0]
+        known = self.pattern.outwards
+        return 2.0 * (real_pushes(self.pattern.radial)[0] + (sum(known) / len(known) if known else 0.0))
 
     def pushes(self) -> list[Push]:
         found = real_pushes(self.pattern.radial, 2.0)[1]
-        scatter = [Push(s.cause, 2.0 * s.bound, 2.0 * s.bound) for s in self.pattern.scatter if s.along == "radial"]
-        return merged(found, scatter)
+        for s in self.pattern.scatter:
+            if s.goes_outward:
+                reach = 2.0 * s.bound * (sum(map(abs, s.outward)) / self.pattern.count if s.outward else 1.0)
+                found.append(Push(s.cause, reach, reach))
+        return merged(found)
 
     def undetermined(self) -> tuple[str, ...]:
-        mine = [s.cause.missing for s in self.pattern.scatter if s.cause.law == "undetermined" and s.along == "radial"]
+        mine = [s.cause.missing for s in self.pattern.scatter if s.cause.law == "undetermined" and s.goes_outward]
         return tuple(dict.fromkeys((*self.pattern.radial.undetermined(), *mine)))
 
     def sample(self, draws: Draws) -> Reals:

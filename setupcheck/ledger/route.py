@@ -22,12 +22,28 @@ from setupcheck.record import record
 class Scatter:
     """Errors that each tooth or hole draws for itself: uniform within +-`bound`.
 
-    along  "angle" [rad about the index axis], "radial" or "tangential" [mm]
+    along    "angle" [rad about the index axis], "radial" or "tangential" [mm], "coordinate" [mm along one machine axis]
+    around   share of the bound that a place has round the circle, in the sense of the numbering; empty: all of it
+    outward  share that a place has outwards, of a coordinate only, drawn together with the share round the circle
+    either   each place draws -`bound` or +`bound` and nothing between
+    groups   number of the draw that a place shares with others, 0, 1, …; empty: each place has its own
     """
 
     cause: Cause
     along: str
     bound: float
+    around: tuple[float, ...] = ()
+    outward: tuple[float, ...] = ()
+    either: bool = False
+    groups: tuple[int, ...] = ()
+
+    @property
+    def goes_round(self) -> bool:
+        return self.along != "radial"
+
+    @property
+    def goes_outward(self) -> bool:
+        return self.along in ("radial", "coordinate")
 
 
 @record(eq=False)
@@ -39,12 +55,21 @@ class Periodic:
 
 
 @record(eq=False)
+class Shaped:
+    """An index error of one real value and a known share for each place: Delta_j = X shape_j [rad]. A drift is one."""
+
+    cause: Cause
+    shape: tuple[float, ...]
+
+
+@record(eq=False)
 class Pattern:
     """Teeth or holes: `count` places on radius `radius`, the j-th cut at theta_j = turn 2 pi (j - 1)/count + start.
 
     pressure_angle  of the flanks [rad], None where it is not stated or where there are no flanks
     rounding        known index errors of the rounded settings [rad], one per place, or empty
-    drift           real causes [rad]: the error grows in equal steps from the first place to the last
+    outwards        known radial errors of the single places [mm], one per place, or empty
+    shaped          real causes [rad] with their share at each place
     radial          account of an error of the pattern radius itself [mm]
     """
 
@@ -56,7 +81,8 @@ class Pattern:
     periodic: tuple[Periodic, ...] = ()
     scatter: tuple[Scatter, ...] = ()
     rounding: tuple[float, ...] = ()
-    drift: tuple[Cause, ...] = ()
+    outwards: tuple[float, ...] = ()
+    shaped: tuple[Shaped, ...] = ()
     radial: Account = field(default_factory=Account)
 
     def angle(self, number: float) -> float:
@@ -202,14 +228,15 @@ def index_error(pattern: Pattern, number: int) -> Account:
     for periodic in pattern.periodic:
         total += Account.of(periodic.cause).along(cmath.exp(1j * periodic.harmonic * cmath.tau * j / pattern.count))
     for scatter in pattern.scatter:
-        if scatter.along == "radial":
+        if not scatter.goes_round:
             continue
         cause = scatter.cause
         if cause.law != "undetermined":
             cause = replace(cause, key=f"{cause.key}, place {number}", law="length", high=scatter.bound)
-        total += Account.of(cause).along(1.0 if scatter.along == "angle" else 1.0 / pattern.radius)
-    for drift in pattern.drift:
-        total += Account.of(drift).along(j / (pattern.count - 1) if pattern.count > 1 else 0.0)
+        share = scatter.around[j] if scatter.around else 1.0
+        total += Account.of(cause).along(share if scatter.along == "angle" else share / pattern.radius)
+    for shaped in pattern.shaped:
+        total += Account.of(shaped.cause).along(shaped.shape[j])
     return total * float(pattern.turn)
 
 

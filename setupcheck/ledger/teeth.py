@@ -22,7 +22,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from setupcheck.ledger.account import Account
-from setupcheck.ledger.route import Pattern
+from setupcheck.ledger.route import Pattern, Scatter
 from setupcheck.record import record
 
 Reals = NDArray[np.floating]
@@ -62,13 +62,13 @@ def backlash_swing(eccentricity: float, pressure_angle: float) -> float:
 def division_arcs(
     pattern: Pattern,
     index_waves: Sequence[Reals | Complexes],
-    drifts: list[Reals],
+    shaped: list[Reals],
     each: list[Reals],
     trials: int,
 ) -> Reals:
     """Arc errors r Delta_j of all places for all trials [mm], shape (trials, count), places lying apart in memory.
 
-    index_waves  one array (trials,) per `pattern.periodic`; drifts one array (trials,) per `pattern.drift` [rad]
+    index_waves  one array (trials,) per `pattern.periodic`; shaped one array (trials,) per `pattern.shaped` [rad]
     each         per-place scatters, arrays (trials, count), already as arcs [mm]; the first is used up as the sum
     """
     theta = 2.0 * np.pi * np.arange(pattern.count) / pattern.count
@@ -77,9 +77,9 @@ def division_arcs(
     for periodic, wave in zip(pattern.periodic, index_waves, strict=True):
         shapes += [np.cos(periodic.harmonic * theta), np.sin(periodic.harmonic * theta)]
         values += [wave.real, wave.imag]
-    for drift in drifts:
-        shapes.append(np.linspace(0.0, 1.0, pattern.count))
-        values.append(drift)
+    for one, value in zip(pattern.shaped, shaped, strict=True):
+        shapes.append(np.asarray(one.shape))
+        values.append(value)
     if pattern.rounding:
         shapes.append(np.asarray(pattern.rounding))
         values.append(np.ones(trials))
@@ -202,12 +202,10 @@ class Gain:
 
     offset: float
     wave: dict[int, float]
-    scatter: float
-    drift: float
 
 
 def gains(pattern: Pattern, *, stepwise: bool, flank: bool) -> Gain:
-    """Factors of offset [per mm], waves [per rad], per-place scatter [per mm of arc] and drift [per rad].
+    """Factors of offset [per mm] and waves [per rad].
 
     Range over the turn: an amplitude A gives at most 2 A. Largest step: 2 A sin(pi k / N), k the folded harmonic
     (pure e: 2 e / cos alpha sin(pi / N)). A wave that folds to zero moves all places alike and costs nothing.
@@ -219,13 +217,47 @@ def gains(pattern: Pattern, *, stepwise: bool, flank: bool) -> Gain:
         return 2.0 * math.sin(math.pi * k / pattern.count) if stepwise else 2.0 * (k != 0)
 
     wave = {p.harmonic: pattern.radius * of(folded(p.harmonic, pattern.count)) for p in pattern.periodic}
-    single = pattern.count == 1
-    return Gain(0.0 if single else of(1) * tilt, wave, 0.0 if single else 2.0, 0.0 if single else pattern.radius)
+    return Gain(0.0 if pattern.count == 1 else of(1) * tilt, wave)
 
 
-def rounding_figure(pattern: Pattern, *, stepwise: bool) -> float:
-    """What the rounded settings alone do to the figure [mm]: range, or largest step."""
+def shape_gain(shape: Sequence[float], *, stepwise: bool) -> float:
+    """Range of a shape over the turn, or its largest step between neighbours, the closing one included. Source: arithmetic."""
+    if not stepwise:
+        return max(shape) - min(shape)
+    return max((abs(a - b) for a, b in zip(shape, [*shape[1:], shape[0]], strict=True)), default=0.0)
+
+
+def scatter_gain(scatter: Scatter, pattern: Pattern, *, stepwise: bool, deeper: float) -> float:
+    """Most that errors which each place draws for itself do to a range of arcs, or to their largest step [mm].
+
+    deeper  what an error outwards does to the arc: tan(alpha) on a flank, else 0; the worse flank counts
+    Range: the two places that reach farthest, one each way; step: the two neighbours that do.  Source: arithmetic.
+    """
+    if pattern.count == 1:
+        return 0.0
+    if scatter.groups and len(set(scatter.groups)) == 1:
+        return 0.0
+    if not scatter.around:
+        return 2.0 * scatter.bound * {"angle": pattern.radius, "tangential": 1.0, "radial": deeper}[scatter.along]
+    length = scatter.bound * (pattern.radius if scatter.along == "angle" else 1.0)
+    out = scatter.outward or (0.0,) * pattern.count
+    reach = [length * (abs(a) + deeper * abs(o)) for a, o in zip(scatter.around, out, strict=True)]
+    if stepwise:
+        return max(a + b for a, b in zip(reach, [*reach[1:], reach[0]], strict=True))
+    return sum(sorted(reach)[-2:])
+
+
+def rounding_figure(pattern: Pattern, *, stepwise: bool, deeper: float = 0.0) -> float:
+    """What the rounded settings alone do to the figure [mm]: range, or largest step; of the worse flank.
+
+    deeper  as `scatter_gain` has it
+    """
     if not pattern.rounding:
         return 0.0
-    arcs = (pattern.radius * np.asarray(pattern.rounding))[None, :]
-    return float((largest_steps if stepwise else ranges)(arcs)[0])
+    figure, found = largest_steps if stepwise else ranges, []
+    for side in (1, -1) if deeper and pattern.outwards else (0,):
+        arcs = pattern.radius * np.asarray(pattern.rounding)
+        if side:
+            arcs = arcs + side * deeper * np.asarray(pattern.outwards)
+        found.append(float(figure(arcs[None, :])[0]))
+    return max(found)

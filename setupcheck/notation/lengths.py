@@ -15,17 +15,25 @@ LONGEST = 10_000.0  # mm; no part of this trade is longer than 10 m; our screeni
 FILE_UNITS = get_args(Units)
 
 
-def length(given: Given, *, units: Units, unit_needed: bool = False, at_least: float | None = None) -> float:
+def length(
+    given: Given,
+    *,
+    units: Units,
+    unit_needed: bool = False,
+    at_least: float | None = None,
+    longest: float = LONGEST,
+) -> float:
     """A size or a position: `12 um`, `0.0005 in`, `1 1/4 in`, `0.5 thou`, or a bare number in the file's units.
 
     unit_needed  refuse a bare number (error entries: run-out, clearance, uncertainty)
-    at_least     smallest value allowed [mm]
-    Returns mm. Raises NotationError; beyond 10 m too.
+    at_least     smallest value allowed [mm];  longest  largest [mm]
+    Returns mm. Raises NotationError; beyond `longest` too.
 
     >>> length("12 um", units="mm"), length(1.25, units="in"), length("1 1/4 in", units="mm")
     (0.012, 31.75, 31.75)
     """
-    return length_in_mm(figure(given, LENGTH, units=units), units, unit_needed=unit_needed, at_least=at_least)
+    read = figure(given, LENGTH, units=units)
+    return length_in_mm(read, units, unit_needed=unit_needed, at_least=at_least, longest=longest)
 
 
 def bound(given: Given, *, units: Units = "mm", unit_needed: bool = True) -> float:
@@ -90,15 +98,17 @@ def without_plus_minus(text: str) -> str:
     return rest
 
 
-def length_in_mm(read: Figure, units: Units, *, unit_needed: bool = False, at_least: float | None = None) -> float:
+def length_in_mm(
+    read: Figure, units: Units, *, unit_needed: bool = False, at_least: float | None = None, longest: float = LONGEST
+) -> float:
     """The value of a figure read as a length, within its limits [mm]."""
     if units not in FILE_UNITS:
         raise ValueError(f"units must be one of {FILE_UNITS}, not {units!r}")
     if not read.unit and unit_needed:
         refuse_bare(read, LENGTH, _with_units(read.number, units))
     value = read.times(LENGTH.units[read.unit or units])
-    if not abs(value) <= LONGEST:
-        refuse_absurd(read, "longer than 10 m")
+    if not abs(value) <= longest:
+        refuse_absurd(read, f"longer than {longest / 1000.0:g} m")
     if at_least is not None and value < at_least:
         if at_least == 0.0:
             raise NotationError(f"{quoted(read.given)} is below zero", "Write 0 or more, without a minus sign")

@@ -3,7 +3,8 @@
 from __future__ import annotations
 
 from setupcheck.division.methods import circles_that_fit, holes_left_over, rounded_settings
-from setupcheck.jobfile.setups import Divide, Setup, Waves
+from setupcheck.jobfile.dividing import Divide
+from setupcheck.jobfile.setups import Setup
 from setupcheck.ledger.teeth import folded
 from setupcheck.quantities.book import Known, Open, Quantity, in_range
 from setupcheck.quantities.dividing import typical_errors
@@ -94,8 +95,8 @@ def folded_harmonic(crank_error: float, worm_ratio: int, count: int) -> float | 
 
 
 def step(setup: Setup) -> float | None:
-    """Smallest step of the readout [rad]. Source: the job file."""
-    return setup.divide.step if setup.divide is not None else None
+    """Smallest step of the readout [rad]; None where coordinates are read, whose step is a length. Source: the job file."""
+    return setup.divide.step if setup.divide is not None and setup.divide.by != "x-y" else None
 
 
 def step_error(count: int, step: float) -> float:
@@ -109,47 +110,6 @@ def setting_error(setup: Setup) -> float | Known | None:
     if setup.divide is None:
         return None
     return setup.divide.setting if setup.divide.setting is not None else _typical(setup.divide, "setting")
-
-
-def stated(setup: Setup, count: int) -> str | Open:
-    """stated or typical, of the dividing device's own error; open with the key to fill.
-
-    Source: the job file; where it states no error, the typical ones of the way of dividing.
-    """
-    if setup.divide is None:
-        return Open((f"setups.{setup.op}.divide",))
-    assert count > 1
-    if setup.divide.wheel is not None or setup.divide.setting is not None:
-        return "stated"
-    return "typical" if typical_errors(setup.divide) else Open((f"setups.{setup.op}.divide.wheel",))
-
-
-HAS_WORM = ("hole-circle", "rotary-table")
-"""Ways of dividing that turn a crank, so that wheel, worm and setting each have an error."""
-HAS_CIRCLE = (*HAS_WORM, "direct", "vernier", "readout")
-"""Ways that read a divided circle or wheel, so that it and the setting each have an error."""
-
-
-def left_out(setup: Setup, count: int) -> str | Open | None:
-    """nothing, or the keys to fill: which error of a stated division nobody says; None where none or a typical one is taken.
-
-    Source: what each way of dividing is made of; a part without an error is written as ±0".
-    """
-    divide = setup.divide
-    assert count > 1
-    if divide is None or (divide.wheel is None and divide.setting is None):
-        return None
-    needed = {
-        "wheel": divide.by in HAS_CIRCLE and not _any_wave(divide.wheel),
-        "worm": divide.by in HAS_WORM and not _any_wave(divide.worm),
-        "setting": divide.setting is None,
-    }
-    missing = tuple(f"setups.{setup.op}.divide.{key}" for key, gone in needed.items() if gone)
-    return Open(missing) if missing else "nothing"
-
-
-def _any_wave(waves: Waves | None) -> bool:
-    return waves is not None and any(getattr(waves, key) is not None for key in Waves.model_fields)
 
 
 def known_kind(stated: str) -> str:
@@ -205,15 +165,6 @@ DIVIDE = (
     ),
     Quantity("divide.setting_error", "setup", "arcsec", 2, setting_error, {"setup": ":"}, "error of one setting"),
     Quantity(
-        "divide.error_stated",
-        "setup",
-        "",
-        0,
-        stated,
-        {"setup": ":", **COUNT},
-        "whether the dividing method's errors are stated",
-    ),
-    Quantity(
         "divide.circle_there",
         "setup",
         "",
@@ -221,15 +172,6 @@ DIVIDE = (
         circle_there,
         {"floor": "route.floor", "setup": ":", "circle": "divide.circle"},
         "whether the head has the chosen circle",
-    ),
-    Quantity(
-        "divide.left_out",
-        "setup",
-        "",
-        0,
-        left_out,
-        {"setup": ":", **COUNT},
-        "errors of the division that nobody states",
     ),
     Quantity(
         "divide.error_kind",

@@ -313,6 +313,6 @@ def scaled(figure: Figure, cause: Cause, factor: float) -> Figure:
         scatter=tuple(
             replace(s, cause=new, bound=s.bound * factor) if s.cause == cause else s for s in pattern.scatter
         ),
-        drift=tuple(new if c == cause else c for c in pattern.drift),
+        shaped=tuple(replace(s, cause=new) if s.cause == cause else s for s in pattern.shaped),
     )
     return replace(figure, pattern=divided)  # type: ignore[type-var]

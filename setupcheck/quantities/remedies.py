@@ -114,9 +114,16 @@ def stated(loaded: LoadedJob, path: str, cause: Cause | None = None) -> Stated |
     if isinstance(node, tuple) and len(node) == 2:
         return Stated(float(node[1]), "um", least=float(node[0]))
     if isinstance(node, float):
-        angular = any(word in path for word in (".divide.", ".tilt", "shaft_angle"))
+        if path.endswith(".polygon_tilt"):  # it counts by its square
+            return None
+        length = path.rpartition(".")[2] in LENGTHS_OF_A_DIVISION
+        angular = not length and any(word in path for word in (".divide.", ".tilt", "shaft_angle"))
         return Stated(node, "arcsec" if angular else "um")
     return None
+
+
+LENGTHS_OF_A_DIVISION = ("centring", "blocks", "x", "y")
+"""Keys under `divide` that state a length; all others state an angle."""
 
 
 @record

@@ -140,6 +140,7 @@ def _cut(floor: Floor, held: Held, placing: Placing, name: str, cut: Cut) -> Non
             turn=placing.sg,
             worm_ratio=machine.worm_ratio if machine is not None else None,
             on_table=on_table,
+            holes=node.kind in ("holes", "slot"),
         )
         target = replace(target, pattern=pattern)
         turn = table_turn(cut, op=op, name=name, radius=fresh.radius, on_table=on_table)

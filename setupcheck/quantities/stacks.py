@@ -60,7 +60,8 @@ def _vector(floor: Floor, stack: Stack) -> Built | Open:
 
 def _scatters_outwards(state: State) -> bool:
     """True for gaps or holes with a radial scatter of their own."""
-    return state.pattern is not None and any(s.along == "radial" for s in state.pattern.scatter)
+    pattern = state.pattern
+    return pattern is not None and (bool(pattern.outwards) or any(s.goes_outward for s in pattern.scatter))
 
 
 def _lean(floor: Floor, stack: Stack) -> Built | Open:

@@ -35,6 +35,7 @@ from setupcheck.quantities.strength import STRENGTH
 from setupcheck.quantities.thread import THREAD
 from setupcheck.quantities.through import THROUGH
 from setupcheck.quantities.tilting import TILT
+from setupcheck.quantities.ways import WAYS
 from setupcheck.quantities.wheel_over_balls import OVER_BALLS
 from setupcheck.quantities.wheel_sizes import WHEEL
 from setupcheck.quantities.worm_sizes import WORM
@@ -268,6 +269,7 @@ TABLES: tuple[Quantity, ...] = (
     *ALLOW,
     *DIVIDE,
     *INDEX_TABLE,
+    *WAYS,
     *TILT,
     *HEAD,
     *JOINING,

@@ -61,7 +61,6 @@ NOT_LOOKED_AT: Mapping[str, Mapping[str, str]] = {
         "sine_bar": "sine bar {said}",
         "blocks": "blocks {said}",
     },
-    "Divide": {"faces": "readings on {said} faces", "order": "teeth cut {said}"},
     "Cut": {
         "depth": "depth {said} of {of} (held against the passes only)",
         "depth_from": "depth of {of} counted from {said}",
@@ -258,8 +257,6 @@ def _setup(loaded: LoadedJob, looked: _Looked, setup: Setup) -> Iterator[Uncompu
     owner, path = f"op {setup.op}", f"setups.{setup.op}"
     if setup.head is not None:
         yield from _entries(loaded, looked, setup.head, f"{path}.head", owner)
-    if setup.divide is not None:
-        yield from _entries(loaded, looked, setup.divide, f"{path}.divide", owner)
     for surface, cut in setup.cut.items():
         yield from _entries(loaded, looked, cut, f"{path}.cut.{surface}", owner, surface)
     if setup.join is not None:

@@ -43,6 +43,8 @@ COUNTED = {
     "divide.worm_ratio": "crank turns for one of the spindle",
     "divide.circle": "holes",
     "divide.left_over": "of a hole",
+    "divide.positions": "positions",
+    "divide.off_position": "of a position",
     "divide.folded_harmonic": "waves round the work",
     "hold.reach": "times the distance of the planes",
     "hold.tilt_datums": "(1 wanted)",

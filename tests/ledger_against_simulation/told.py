@@ -25,7 +25,7 @@ class Told(Draws):
     def cause(self, cause: Cause) -> NDArray[np.complex128]:
         return np.array([value_of(cause, self.truth)])
 
-    def scatter(self, scatter: Scatter, pattern: Pattern) -> NDArray[np.float64]:
+    def scatter(self, scatter: Scatter, pattern: Pattern, *, outward: bool = False) -> NDArray[np.float64]:
         arm = pattern.radius if scatter.along == "angle" else 1.0
         values = self.truth.at_places(scatter.cause.paths, scatter.cause.key)
         if values is None:

@@ -8,7 +8,7 @@ import json
 import pytest
 from pydantic import BaseModel
 
-from setupcheck.jobfile import grinding, heating, insert_profile, marks, models, properties, setups, worm
+from setupcheck.jobfile import dividing, grinding, heating, insert_profile, marks, models, properties, setups, worm
 from setupcheck.report.json import as_json
 from setupcheck.report.text import as_text
 from setupcheck.report.uncomputed import NOT_LOOKED_AT, in_lines, uncomputed
@@ -55,7 +55,8 @@ READ = {
     "MidPlane": "found error pivot",
     "Head": "mid_plane",
     "Waves": "once_per_turn twice_per_turn once_per_crank",
-    "Divide": "by circle wheel worm setting clamp step drift",
+    "Divide": "by circle wheel worm setting clamp step drift order positions positions_error sides sides_error sighting "
+    "polygon_tilt centring target plumb elevation collimation trunnion faces sine_bar blocks quarters x y",
     "Scatter": "radial tangential by",
     "Touched": "surface measured uncertainty at_most tool",
     "Cut": "passes to state leave_on_diameter leave_on_radius leave error removes from_surface finishing_cut form cutter each "
@@ -71,7 +72,7 @@ READ = {
 
 RECORDS = {
     record.__name__: record  # not the name it is found under: some have a second one
-    for module in (grinding, insert_profile, models, properties, setups, heating, worm, marks)
+    for module in (dividing, grinding, insert_profile, models, properties, setups, heating, worm, marks)
     for record in vars(module).values()
     if inspect.isclass(record)
     and issubclass(record, BaseModel)
