@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import json
+import re
 
 from setupcheck.report.heating_plan import heating_plans
 from setupcheck.report.joint import joints
@@ -33,8 +34,16 @@ def test_the_wheel_says_angle_side_cutter_insert_fit_and_heat() -> None:
 
 def test_jobs_with_nothing_to_work_out_have_no_such_part() -> None:
     for text in (GEAR, PLATE):
-        assert [] == worked_out(reviewed(text))
-        assert "WORKED OUT" not in as_text(reviewed(text))
+        undivided = re.sub(r"\n +divide: .*", "", text)
+        assert [] == worked_out(reviewed(undivided))
+        assert "WORKED OUT" not in as_text(reviewed(undivided))
+
+
+def test_a_setup_that_divides_says_its_step_and_where_the_table_is() -> None:
+    step = "1 turn, back into the same hole"
+    assert [f"op 40, index: {step}; index table: setupcheck index JOB"] == worked_out(reviewed(GEAR))
+    step = "24 places, 15.0000 deg from one to the next"
+    assert [f"op 30, index: {step}; index table: setupcheck index JOB"] == worked_out(reviewed(PLATE))
 
 
 def test_a_line_with_a_number_missing_is_left_out_whole() -> None:
