@@ -65,18 +65,21 @@ WAYS_OF: Mapping[str, tuple[str, ...]] = {
 NEEDS: Mapping[str, tuple[str, str]] = {
     "centring": (
         "target",
-        "the parallax of an instrument off the axis goes down with the distance. Write target: 12 m",
+        "the parallax of an instrument off the axis goes down with the distance. Write it, as in target: 12 m",
     ),
-    "plumb": ("elevation", "a tilted axis counts with the slope of the sight. Write elevation: 0 deg for a level one"),
+    "plumb": (
+        "elevation",
+        "a tilted axis counts with the slope of the sight. Write it, elevation: 0 deg for a level one",
+    ),
     "trunnion": (
         "elevation",
-        "a tilted trunnion counts with the slope of the sight. Write elevation: 0 deg for a level one",
+        "a tilted trunnion counts with the slope of the sight. Write it, elevation: 0 deg for a level one",
     ),
     "collimation": (
         "elevation",
-        "collimation counts with the slope of the sight. Write elevation: 0 deg for a level one",
+        "collimation counts with the slope of the sight. Write it, elevation: 0 deg for a level one",
     ),
-    "blocks": ("sine_bar", "an error of the blocks counts over the bar's length. Write sine_bar: 200 mm"),
+    "blocks": ("sine_bar", "an error of the blocks counts over the bar's length. Write it, as in sine_bar: 200 mm"),
 }
 """What a key cannot be used without, and why."""
 

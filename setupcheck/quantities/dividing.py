@@ -89,7 +89,7 @@ def divided(
         if pattern.count > 1:
             found.taken = typical_errors(divide)
             divide = _filled(divide, found.taken)
-            if not has_own_errors(divide):
+            if not has_own_errors(divide) and (holes or divide.by != "x-y"):
                 key = "x" if divide.by == "x-y" else "wheel" if divide.by in HAS_WHEEL else "setting"
                 found.unknown(": error of the device", f"{found.path}.{key}")
         _of_the_device(found, divide, worm_ratio)
@@ -130,15 +130,15 @@ def _of_the_device(found: _Errors, divide: Divide, worm_ratio: int | None) -> No
         if divide.by == "theodolite" and waves == 1 and divide.faces == "two":
             continue
         if divide.by == "theodolite" and waves == 1 and divide.faces == "mixed":
-            found.each(f"{what}, on either face", amplitude, key, either=True)
+            found.each(f"{what} on either face", amplitude, key, either=True)
         elif waves is None:
             found.unknown(f": {what}", f"setups.{found.op}.machine")
         else:
             found.wave(what, amplitude, waves, key)
     found.each("setting", divide.setting, "setting")
     found.each("clamping shift", divide.clamp, "clamp")
-    found.each("its places, each off", divide.positions_error, "positions_error")
-    found.each("sides of the polygon, each off", divide.sides_error, "sides_error")
+    found.each("error of the positions", divide.positions_error, "positions_error")
+    found.each("error of the sides", divide.sides_error, "sides_error")
     found.each("sighting", divide.sighting, "sighting")
     if divide.polygon_tilt:
         found.wave("tilt of the polygon", ways.tilted_axis_wave(divide.polygon_tilt), 2, "polygon_tilt")
@@ -161,7 +161,7 @@ def _of_the_sight(found: _Errors, divide: Divide) -> None:
         found.wave("instrument out of plumb", ways.plumb_wave(divide.plumb, divide.elevation), 1, "plumb")
     if divide.faces == "mixed":
         for key, error in sight_errors(divide).items():
-            found.each(f"{key}, on either face", error, key, either=True)
+            found.each(f"{key} on either face", error, key, either=True)
 
 
 def sight_errors(divide: Divide) -> dict[str, float]:

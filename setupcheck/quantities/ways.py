@@ -20,8 +20,8 @@ LONGEST_SIGHT = 200_000.0
 """Farthest target that is worth advice [mm]. Source: our choice."""
 
 
-def own_error(setup: Setup, count: int) -> str | Open:
-    """stated or typical, of the dividing device's own error; open with the key to fill.
+def own_error(floor: Floor, setup: Setup, count: int) -> str | Open:
+    """stated or typical, of the dividing device's own error; open with the key to fill, for teeth by coordinates with the way.
 
     Source: the job file; where it states no error, the typical ones of the way of dividing.
     """
@@ -29,10 +29,17 @@ def own_error(setup: Setup, count: int) -> str | Open:
     if divide is None:
         return Open((f"setups.{setup.op}.divide",))
     assert count > 1
+    if divide.by == "x-y" and _cuts_teeth(floor, setup):
+        return Open((f"setups.{setup.op}.divide.by",), "coordinates set holes, not teeth")
     if has_own_errors(divide):
         return "stated"
     key = "x" if divide.by == "x-y" else "wheel"
     return "typical" if typical_errors(divide) else Open((f"setups.{setup.op}.divide.{key}",))
+
+
+def _cuts_teeth(floor: Floor, setup: Setup) -> bool:
+    refs = (floor.loaded.ref(name, setup.part) for name in setup.cut)
+    return any(floor.loaded.job.parts[ref.part].surfaces[ref.surface].kind == "teeth" for ref in refs)
 
 
 def left_out(setup: Setup, count: int) -> str | Open | None:
@@ -57,13 +64,19 @@ def left_out(setup: Setup, count: int) -> str | Open | None:
 def _own_parts(divide: Divide) -> dict[str, bool]:
     """Key -> whether a division that states some error of its own leaves this one out."""
     by, set_otherwise = divide.by, divide.by in ("sine-bar", "x-y")
-    averaged = by == "theodolite" and divide.faces == "two"
+    sighted, placed = by == "theodolite", by in ("direct", "face-teeth")
+    averaged, mixed = sighted and divide.faces == "two", sighted and divide.faces == "mixed"
     return {
         "wheel": by in HAS_WHEEL and not averaged and not _any_wave(divide.wheel),
         "worm": by in HAS_WORM and not _any_wave(divide.worm),
         "setting": divide.setting is None
         and not set_otherwise
         and not (by == "polygon" and divide.sighting is not None),
+        "positions_error": placed and divide.positions_error is None,
+        "plumb": sighted and divide.plumb is None,
+        "collimation": mixed and divide.collimation is None,
+        "trunnion": mixed and divide.trunnion is None,
+        "polygon_tilt": by == "polygon" and divide.polygon_tilt is None,
         "sides_error": by == "polygon" and divide.sides_error is None,
         "blocks": by == "sine-bar" and divide.blocks is None and divide.setting is None,
         "quarters": divide.blocks is not None and divide.quarters is None,
@@ -223,7 +236,14 @@ def _row(name: str, unit: str, digits: int, law: object, inputs: dict[str, str],
 
 
 WAYS = (
-    _row("error_stated", "", 0, own_error, {**_SETUP, **_COUNT}, "whether the dividing method's errors are stated"),
+    _row(
+        "error_stated",
+        "",
+        0,
+        own_error,
+        {"floor": "route.floor", **_SETUP, **_COUNT},
+        "whether the dividing method's errors are stated",
+    ),
     _row("left_out", "", 0, left_out, {**_SETUP, **_COUNT}, "errors of the division that nobody states"),
     _row("positions", "1", 0, positions, {**_SETUP, **_COUNT}, "notches, face-teeth or sides there are"),
     _row("off_position", "1", 3, off_position, _POSITIONS, "part of a position that one step leaves over"),

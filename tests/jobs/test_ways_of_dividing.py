@@ -6,12 +6,14 @@ The disc and the plate are invented, and true but for their division, so that no
 from __future__ import annotations
 
 import itertools
+import json
 import math
 from collections.abc import Callable
 from typing import get_args
 
 import numpy as np
 import pytest
+import yaml
 from numpy.typing import NDArray
 
 from setupcheck.division.order import cutting_order
@@ -173,13 +175,13 @@ CASES: dict[str, tuple[str, int, Callable[[Drawing], Reals]]] = {
     ),
     "theodolite, both faces": (
         '{by: theodolite, faces: two, setting: 4", sighting: 1", centring: 0.1 mm, target: 10 m, '
-        'elevation: 20 deg, collimation: 30", wheel: {once_per_turn: 60"}}',
+        'plumb: 0", elevation: 20 deg, collimation: 30", wheel: {once_per_turn: 60"}}',
         12,
         lambda d: d.each(4 * ARCSEC, 12) + d.each(ARCSEC, 12) + walking_round(d, 0.1, 10_000.0, 12),
     ),
     "theodolite, mixed faces": (
         '{by: theodolite, faces: mixed, setting: 4", sighting: 1", centring: 0 mm, target: 10 m, '
-        'elevation: 30 deg, collimation: 5", wheel: {once_per_turn: 0"}}',
+        'plumb: 0", elevation: 30 deg, collimation: 5", trunnion: 0", wheel: {once_per_turn: 0"}}',
         5,
         lambda d: (
             d.each(4 * ARCSEC, 5)
@@ -244,6 +246,36 @@ def test_no_corner_passes_the_worst_case_and_none_but_waves_stay_far_below(case:
 def test_no_way_that_states_everything_is_open(case: str) -> None:
     divide, count, _ = CASES[case]
     assert [] == [f for f in reviewed(disc(divide, count)).evaluation.findings if f.verdict == "open"]
+
+
+DEFAULTS = {
+    "clamp": "clamping shifts nothing",
+    "drift": "nothing drifts",
+    "order": "places are cut one after the other",
+    "sighting": "the setting holds the sighting too",
+    "step": "nothing is rounded",
+    "faces": "one face only matters to what is stated of the circle, and DIVIDE-009 asks",
+}
+"""Keys of a division that may be left out, and what is taken then."""
+
+
+@pytest.mark.parametrize("case", CASES)
+def test_no_figure_moves_in_silence_when_a_key_is_left_out(case: str) -> None:
+    divide, count, _ = CASES[case]
+    whole = yaml.safe_load(divide)
+    for key in set(whole) - {"by"} - set(DEFAULTS):
+        text = disc(json.dumps({k: v for k, v in whole.items() if k != key}), count)
+        try:
+            found = reviewed(text)
+        except JobError:
+            continue
+        moved = [
+            i for i in (0, 1) if stack(text, i).combined.worst.high != stack(disc(divide, count), i).combined.worst.high
+        ]
+        said = [
+            f for f in found.evaluation.findings if f.verdict == "open" or (f.rule, f.verdict) == ("DIVIDE-004", "warn")
+        ]
+        assert said or not moved, key
 
 
 def test_both_ways_of_drifting_have_one_range_and_only_one_a_slow_wave() -> None:

@@ -99,7 +99,7 @@ def test_a_typical_division_counts_as_much_as_the_same_figures_stated() -> None:
 @pytest.mark.parametrize("by", ["x-y"])
 def test_a_way_of_dividing_that_is_not_in_the_table_stays_open(by: str) -> None:
     found = reviewed(changed(WHEEL, (DIVIDE, f"divide: {{by: {by}}}")))
-    assert [("DIVIDE-003", "open", ("setups.40.divide.wheel",))] == [
+    assert [("DIVIDE-003", "open", ("setups.40.divide.by",))] == [  # teeth: no coordinates set them
         (f.rule, f.verdict, f.missing) for f in found.evaluation.findings if f.rule == "DIVIDE-003" and f.op == 40
     ]
     assert "open" == found.verdict
