@@ -49,38 +49,17 @@ def command(
         return
     if job is None or readings is None:
         raise typer.BadParameter("write the job and its readings, as in: setupcheck readings wheel.yaml test.csv")
-    sure = _angle(instrument) if instrument is not None else None
+    from setupcheck.report.typed import typed_angle, typed_size
+
+    sure = typed_angle("--instrument", instrument) if instrument is not None else None
     found = _read(job, readings, of, turns_with_work=turns_with_work, instrument=sure)
     from setupcheck.report.against import verdict
     from setupcheck.report.readings import as_json as in_json
     from setupcheck.report.readings import as_text
 
-    size = _size(diameter, found) if diameter is not None else None
+    size = typed_size("--diameter", diameter, found.loaded) if diameter is not None else None
     sys.stdout.write(in_json(found) if as_json else as_text(found, diameter=size))
     raise typer.Exit({"pass": 0, "fail": 3}.get(verdict(found), 1))
-
-
-def _angle(text: str) -> float:
-    """Uncertainty of an angle [rad]."""
-    from setupcheck.notation import NotationError, angle_bound
-
-    try:
-        return angle_bound(text)
-    except NotationError as why:
-        raise typer.BadParameter(f"--instrument: {why}") from None
-
-
-def _size(text: str, found: "ReadBack") -> float:
-    """Diameter of a workpiece [mm]."""
-    from setupcheck.notation import NotationError, length
-
-    try:
-        size = length(text, units=found.loaded.job.units)
-    except NotationError as why:
-        raise typer.BadParameter(f"--diameter: {why}") from None
-    if size <= 0.0:
-        raise typer.BadParameter(f"--diameter: '{text}' is no size of a workpiece. Write it as in 200 mm")
-    return size
 
 
 def _read(job: Path, readings: Path, of: str | None, *, turns_with_work: bool, instrument: float | None) -> "ReadBack":

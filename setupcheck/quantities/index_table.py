@@ -98,11 +98,9 @@ def index_table(floor: Floor, setup: Setup, count: int, worm_ratio: int | None) 
     if kind == "holes" and worm_ratio is None:
         missing = division.worm_ratio(floor, setup)
         return missing if isinstance(missing, Open) else Open((f"setups.{setup.op}.machine",))
-    if kind == "holes" and divide.circle is None:
-        return Open((f"setups.{setup.op}.divide.circle",))
-    bar = getattr(divide, "sine_bar", None) if kind == "sine-bar" else None
-    if kind == "sine-bar" and bar is None:
-        return Open((f"setups.{setup.op}.divide.sine_bar",))
+    needed = _needed(divide, kind)
+    if needed and getattr(divide, needed) is None:
+        return Open((f"setups.{setup.op}.divide.{needed}",))
     circles, own = head_circles(floor, setup)
     per_turn = _per_turn(divide, kind, worm_ratio)
     order = divide.order or "in-turn"
@@ -122,27 +120,25 @@ def index_table(floor: Floor, setup: Setup, count: int, worm_ratio: int | None) 
         pattern.radius,
         pattern.turn * pattern.start,
         "+z" if own_sense > 0 else "-z",
-        bar,
+        divide.sine_bar,
         divide.step if kind == "x-y" else None,
         tables.settings(count, per_turn if per_turn is not None else count, _places(count, order)),
     )
 
 
 def _kind(divide: Divide) -> str:
-    if divide.by == "hole-circle" or (divide.by == "rotary-table" and divide.circle is not None):
-        return "holes"
     if divide.by in ("x-y", "sine-bar"):
         return divide.by
-    return "positions" if positions_of(divide) is not None else "angles"
+    return {"hole-circle": "holes", "direct": "positions", "face-teeth": "positions", "polygon": "positions"}.get(
+        divide.by, "angles"
+    )
 
 
-def positions_of(divide: Divide) -> int | None:
-    """Places that the device itself has (notches of a direct plate, teeth of a face coupling, faces of a polygon)."""
-    for key in ("positions", "sides"):
-        found = getattr(divide, key, None)
-        if found is not None:
-            return int(found)
-    return None
+def _needed(divide: Divide, kind: str) -> str:
+    """The key without which there is no table; empty where none is needed."""
+    if kind == "positions":
+        return "sides" if divide.by == "polygon" else "positions"
+    return {"holes": "circle", "sine-bar": "sine_bar"}.get(kind, "")
 
 
 def _per_turn(divide: Divide, kind: str, worm_ratio: int | None) -> Fraction | None:
@@ -151,7 +147,7 @@ def _per_turn(divide: Divide, kind: str, worm_ratio: int | None) -> Fraction | N
         assert divide.circle is not None
         return Fraction(worm_ratio * divide.circle)
     if kind == "positions":
-        return Fraction(positions_of(divide) or 1)
+        return Fraction(divide.positions or divide.sides or 1)
     return 1 / tables.exact_share(divide.step) if kind == "angles" and divide.step else None
 
 

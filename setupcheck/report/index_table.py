@@ -167,7 +167,7 @@ def _legend(table: IndexTable) -> str:
         )
     kinds = {
         "holes": "turns and holes are the move to the place, `at` is the hole counted from the start",
-        "positions": "step is the move to the place, `at` is the position counted from the start",
+        "positions": "step is the move to the place in positions of the device, `at` is its position counted from the start",
         "sine-bar": "angle and blocks count from the quarter; below zero they stand before it, the blocks under the other end",
         "angles": "turns and dial are what the crank has made since the start"
         if table.worm_ratio

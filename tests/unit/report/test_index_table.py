@@ -74,9 +74,13 @@ VARIANTS = {
     "readout": wheel("""divide: {by: readout, step: 36", setting: 20"}"""),
     "vernier": wheel("""divide: {by: vernier, step: 5', setting: 30"}"""),
     "theodolite in gon": wheel("""divide: {by: theodolite, step: 0.0005 gon, setting: 3"}"""),
-    "direct": wheel("""divide: {by: direct}"""),
+    "direct": wheel("""divide: {by: direct, positions: 144}"""),
+    "face teeth": wheel("""divide: {by: face-teeth, positions: 360}"""),
+    "polygon": wheel("""divide: {by: polygon, sides: 72}"""),
+    "sine bar": wheel("""divide: {by: sine-bar, sine_bar: 200 mm}"""),
     "table": TEXTS["index-plate"],
     "x-y in inches": plate("divide: {by: x-y}"),
+    "x-y in steps": plate("divide: {by: x-y, step: 0.5 thou}"),
     "x-y": plate("divide: {by: x-y}").replace("count: 24", "count: 7, angle: 20 deg"),
 }
 
@@ -192,6 +196,30 @@ def test_a_rotary_table_tells_turns_of_its_handle_and_the_dial() -> None:
     assert "no step of the device is stated" in flowing(TEXTS["index-plate"])
 
 
+def test_a_plate_moves_by_whole_notches_and_rounds_what_it_has_not() -> None:
+    assert {"2"} == {row[1] for row in rows(VARIANTS["direct"])[1:]}
+    # 50 notches for 72 teeth: 0.694 of a notch each, 22 teeth share one with a neighbour
+    text = wheel("divide: {by: direct, positions: 50}")
+    (finding,) = [f for f in review(read_job_text(text, "job.yaml")).evaluation.findings if f.rule == "DIVIDE-016"]
+    assert (finding.verdict, finding.value) == ("fail", 22)
+
+
+def test_gauge_blocks_of_a_sine_bar_give_the_angle_back() -> None:
+    for row in rows(VARIANTS["sine bar"]):
+        quarter, blocks, off = float(row[1]), float(row[5]), float(row[6])
+        sign = -1 if row[2].startswith("-") else 1
+        angle = quarter + sign * math.degrees(math.asin(blocks / 200.0))
+        assert (angle - off / 3600 - 5 * (int(row[0]) - 1)) % 360 == pytest.approx(0.0, abs=2e-6) or (
+            360 - (angle - off / 3600 - 5 * (int(row[0]) - 1)) % 360
+        ) == pytest.approx(0.0, abs=2e-6)
+        assert abs(angle - quarter) <= 45.01
+
+
+def test_coordinates_are_told_in_the_steps_of_the_readout() -> None:
+    for row in rows(VARIANTS["x-y in steps"]):
+        assert all(float(cell) / 0.0005 == pytest.approx(round(float(cell) / 0.0005), abs=1e-6) for cell in row[1:3])
+
+
 def test_a_readout_shows_what_its_steps_leave_over_and_nothing_adds_up() -> None:
     found = rows(VARIANTS["vernier"].replace("count: 72", "count: 7"))
     # 360/7 deg = 51 deg 25' 42.86", to 5': 51 deg 25' is 42.86" short, the next one 34.29" beyond 102 deg 50' + ...
@@ -248,6 +276,9 @@ def test_rounding_is_judged_against_the_tightest_limit_of_the_division() -> None
             None,
             "job.yaml: no index table of op 40: fill setups.40.divide.circle; circles that close: 18, 27",
         ),
+        (wheel("divide: {by: direct}"), None, "job.yaml: no index table of op 40: fill setups.40.divide.positions"),
+        (wheel("divide: {by: polygon}"), None, "job.yaml: no index table of op 40: fill setups.40.divide.sides"),
+        (wheel("divide: {by: sine-bar}"), None, "job.yaml: no index table of op 40: fill setups.40.divide.sine_bar"),
         (
             WHEEL.replace("worm_ratio: 40, ", ""),
             None,
