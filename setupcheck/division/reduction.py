@@ -85,6 +85,7 @@ def reduce(
         )
     wheel = Wheel(count, radius, pressure_angle, start, turn)
     turned = readings.kind == "turned" or (turns_with_work and readings.kind == "angle")
+    grows = turn if readings.kind == "tooth" else 1  # teeth may be numbered clockwise, angles never are
     ready = prepare(readings, count=count, worm_ratio=worm_ratio, start=start, turn=turn)
     names = _asked(worm_ratio, head_ratio)
     found = _found(ready.points, list(names))
@@ -99,7 +100,7 @@ def reduce(
         Unseen(names[a.harmonic], a.harmonic, a.why, tuple(names[h] for h in a.taken_for)) for a in found.plan.alike
     )
     own = next((w for w in waves if worm_ratio is not None and w.harmonic == worm_ratio), None)
-    off = eccentric(found.fit, found.spread, found.nu, waves, wheel, turned=turned, points=found.points)
+    off = eccentric(found.fit, found.spread, found.nu, waves, wheel, turned=turned, grows=grows, points=found.points)
     return Reduced(
         verdict="open" if reasons or not waves or waves[0].open else "told",
         reasons=tuple(dict.fromkeys([*reasons, *_first(waves), *_nothing(found, waves)])),
@@ -112,13 +113,14 @@ def reduce(
         waves=waves,
         unseen=unseen,
         eccentric=off,
-        flanks=_flanks(found, turned),
+        flanks=_flanks(found, turned, grows),
         worm=own,
         scatter=found.scatter.repeat if found.scatter.repeat_nu >= 3 and found.scatter.repeat is not None
         else _root(found.fit.square / found.fit.nu if found.fit.nu else math.nan),
         nu=found.scatter.repeat_nu if found.scatter.repeat_nu >= 3 else found.fit.nu,
         stations_scatter=found.scatter.stations,
         range=_range(found),
+        per_mean=_per_mean(found.points),
         range_without_first=_range(found, centred=True) if Term("wave", 1.0) in found.fit.terms else None,
         drift=_single(found, Term("drift")),
         closure=_closure(found.points, whole=comes_round(names)),
@@ -254,13 +256,13 @@ def _waves(found: _Found, names: dict[float, str], turned: bool, reasons: Sequen
     return tuple(made)
 
 
-def _flanks(found: _Found, turned: bool) -> Flanks | None:
+def _flanks(found: _Found, turned: bool, grows: int) -> Flanks | None:
     """Mean and difference of both flanks in the first wave; turned as in `eccentric.py` where stations are turns."""
     wave, swing = Term("wave", 1.0), Term("swing", 1.0)
     if wave not in found.fit.terms or swing not in found.fit.terms or not found.spread > 0.0:
         return None
     at = np.concatenate([np.arange(found.fit.values.size)[found.fit.at(term)] for term in (wave, swing)])
-    sense = np.array([-1.0, 1.0, 1.0, -1.0]) if turned else np.ones(4)
+    sense = np.array([-1.0, 1.0, 1.0, -1.0]) if turned else np.array([1.0, 1.0, grows, grows])
     a, b, c, d = (float(x) for x in found.fit.values[at] * sense)
     covariance = found.fit.inverse[np.ix_(at, at)] * found.spread * np.outer(sense, sense)
     return Flanks((a, b, c, d), tuple(tuple(map(float, row)) for row in covariance))
@@ -359,6 +361,12 @@ def _range(found: _Found, *, centred: bool = False) -> float:
         means = np.bincount(at, rest[mine]) / np.bincount(at)
         worst = max(worst, float(means.max() - means.min()))
     return worst
+
+
+def _per_mean(points: Points) -> int:
+    """Fewest readings that the mean of a station in one direction rests on."""
+    at = np.stack([places(points, whole=True), points.direction], axis=1)
+    return int(np.unique(at, axis=0, return_counts=True)[1].min())
 
 
 def warnings(unseen: Sequence[Unseen]) -> list[str]:

@@ -57,7 +57,7 @@ class Wave:
 
 @record
 class Flanks:
-    """Both flanks of the first wave: mean (a, b), and forward less reverse (a, b), in the frame of the work [rad].
+    """Both flanks of the first wave: mean (a, b), and clockwise less other flank (a, b), in the frame of the work [rad].
 
     covariance  of these four, row by row [rad2].  Teeth off their axis have the difference 2 tan(alpha) (-b, a) of the mean.
     """
@@ -114,6 +114,7 @@ class Reduced:
     rows        readings;  stations, runs  different ones
     scatter     standard deviation of one reading [rad], nu its degrees of freedom;  stations_scatter  of places themselves
     range       largest less smallest mean of a station, drift taken off [rad], the larger of both directions
+    per_mean    fewest readings that such a mean rests on, both faces of one sight counted once
     range_without_first  the same with the first wave taken off as well, None where it is not fitted
     drift       over the whole test [rad];  closure  last less first reading of the first station, None where not repeated
     reversal    forward less reverse [rad], None with why in `no_reversal`
@@ -142,6 +143,7 @@ class Reduced:
     nu: int
     stations_scatter: float
     range: float
+    per_mean: int
     range_without_first: float | None
     drift: Interval | None
     closure: float | None

@@ -9,7 +9,8 @@ EXPLAINED = """\
 # STATION, one of these columns
 #   angle_deg  angle_gon  angle_dms     a place on the work, from its mark, counter-clockwise seen from its +z side
 #   turned_deg turned_gon turned_dms    how far the work was turned from its first station, counter-clockwise seen from +z:
-#                                       for a theodolite or an encoder that rides on the work and turns with it
+#                                       for a theodolite or an encoder that rides on the work and turns with it; at 0 the
+#                                       work's mark has to stand at the worm, or all directions are off by as much
 #                                       (or keep angle_... and call setupcheck with --turns-with-work)
 #   tooth                               its number: tooth n stands between gap n and gap n + 1 in the order they were cut
 #   Angles may pass 360 and repeat. dms is 10deg 20' 30", 10 20 30 or 10:20:30.

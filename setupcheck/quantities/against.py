@@ -122,7 +122,7 @@ def against(book: Book, floor: Floor, test: Reduced, of: str, *, instrument: flo
         return Open(because="the figure of that requirement is none of a ring of teeth or holes")
     drawn = book.get("route.draws", book.instances("job")[0])
     assert isinstance(drawn, Known) and isinstance(drawn.value, Draws)
-    scatter = test.scatter * math.sqrt(2.0 * max(test.stations, 1) / max(test.rows, 1))
+    scatter = test.scatter * math.sqrt(2.0 / test.per_mean)  # the range is a difference of two means of one direction
     u = math.hypot(scatter, instrument / 2.0) if instrument is not None else None
     factors = [(scope, plan, _factor(plan, ring.pattern.radius)) for scope, plan in known]
     return Against(
@@ -191,8 +191,8 @@ def _plane(values: NDArray[np.generic]) -> Reals:
 
 
 def _of_both_flanks(ring: Tooth, draws: Draws) -> tuple[Reals, dict[str, Reals]]:
-    """Middle (4,) and covariance by owner of mean and difference of both flanks: places of the work turned forward are read on
-    the clockwise flank, so the difference is side -1 less side +1."""
+    """Middle (4,) and covariance by owner of mean and difference of both flanks: the clockwise flank less the other, side -1 less
+    side +1, as `Flanks` has it."""
     sides = {side: harmonic.planned_wave(ring, 1, draws, side=side) for side in (-1, 1)}
     drawn = {side: {p.cause.identity: (p.cause, p.drawn) for p in wave.parts} for side, wave in sides.items()}
     both: dict[str, tuple[Cause, Reals]] = {}

@@ -140,8 +140,9 @@ def _move(found: ReadBack, a: Against) -> Iterator[str]:
         now, then, most = (show(one.value * share, unit, digits) for share in (1.0, a.move.then, a.move.most))
         falls.append(f"{one.plan.stack.require.what} falls from {now} to {then}, at most {most}")
     yield from wrap(
-        f"Teeth put true to the axis of use (held again by their pitch circle and bored, or shifted, "
-        f"{show(a.move.amount, *fine)} towards tooth {a.move.tooth}, known to {show(a.move.within, *fine)}): "
+        f"Teeth stand {show(a.move.amount, *fine)} towards tooth {a.move.tooth} off the axis of use, known to "
+        f"{show(a.move.within, *fine)}. Put true to it (held again by their pitch circle and bored, or shifted away from that "
+        "tooth): "
         f"{'; '.join(falls)}",
         first="  ",
         rest="      ",

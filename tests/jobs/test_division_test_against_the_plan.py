@@ -82,7 +82,8 @@ def test_a_large_error_fails_and_says_what_truing_would_bring(tmp_path: Path) ->
     then = a.move.then * a.answers[0].value
     assert true.against.answers[0].value == pytest.approx(then, abs=1.0 * ARCSEC)  # the same wheel on its own axis
     assert a.move.then < a.move.most < 0.1
-    assert f"40.0 um towards tooth {a.move.tooth}" in said(found)
+    assert f"Teeth stand 40.0 um towards tooth {a.move.tooth} off the axis of use" in said(found)
+    assert "or shifted away from that tooth" in said(found)  # a ring that stands out there
 
 
 def test_without_the_instruments_uncertainty_nothing_is_judged(tmp_path: Path) -> None:
@@ -193,3 +194,17 @@ def test_holes_and_spur_gears_are_set_against_their_own_figures(tmp_path: Path) 
         assert isinstance(found.against, Against), found.against
         assert found.against.answers[0].plan.stack.require.what == figure
         assert as_data(found)["plan"]["verdict"] in ("pass", "warn", "fail")  # type: ignore[index]
+
+
+@pytest.mark.parametrize("directions", [("forward",), ("forward", "reverse")])
+@pytest.mark.parametrize("faces", [False, True])
+def test_the_range_is_as_uncertain_as_two_means_of_one_direction(
+    directions: tuple[str, ...], faces: bool, tmp_path: Path
+) -> None:
+    """Three runs: each mean rests on three readings, whether the other direction or the other face was read as well or not."""
+    file = written(tmp_path, e=0.003, directions=directions)
+    if faces:
+        head, *lines = file.read_text().splitlines()
+        file.write_text("\n".join([f"{head},face", *(f"{line},{face}" for line in lines for face in "12")]) + "\n")
+    found, a = told(file)
+    assert a.scatter == pytest.approx(2.0 * found.reduced.scatter * math.sqrt(2.0 / 3.0))
