@@ -16,6 +16,7 @@ USUAL_RATIOS = (40, 60, 72, 90, 120)
 """Ratios of heads and rotary tables that are found in shops. Source: common practice."""
 ARCSEC = 1_296_000
 """Seconds of arc in a turn."""
+NOTHING = Fraction(0)
 
 
 @record
@@ -25,14 +26,19 @@ class Setting:
     place  number on the part, counted from 1; the last line of a table is the first place again
     steps  where the device stands, in its smallest steps from the start
     moved  steps forward from the line before; 0 in the first line
-    angle  what the work has turned as set, share of a turn;  off  set less exact, share of a turn
+    per_turn  steps in a turn of the work;  off  set less exact, share of a turn
     """
 
     place: int
     steps: int
     moved: int
-    angle: Fraction
+    per_turn: Fraction
     off: Fraction
+
+    @property
+    def angle(self) -> Fraction:
+        """What the work has turned as set, share of a turn."""
+        return self.steps / self.per_turn
 
 
 def to_whole(up: int, low: int) -> int:
@@ -66,8 +72,9 @@ def settings(count: int, per_turn: Fraction | int, order: Sequence[int] = ()) ->
     for number, place in enumerate((*places, count + 1)):
         steps = to_whole((place - 1) * up, low * count)
         moved = 0 if number == 0 else whole_turn if count == 1 else (steps - at) % whole_turn
-        angle = Fraction(steps * low, up)
-        found.append(Setting(1 if place > count else place, steps, moved, angle, angle - Fraction(place - 1, count)))
+        rest = steps * low * count - (place - 1) * up
+        off = Fraction(rest, up * count) if rest else NOTHING
+        found.append(Setting(1 if place > count else place, steps, moved, per_turn, off))
         at = steps
     return tuple(found)
 

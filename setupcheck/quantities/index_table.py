@@ -70,7 +70,7 @@ class IndexTable:
     @property
     def exact(self) -> bool:
         """Whether no place is rounded."""
-        return tables.largest_off(self.lines) == 0
+        return not any(line.off for line in self.lines[:-1])
 
 
 def cut_pattern(floor: Floor, setup: Setup) -> tuple[str, str, Pattern] | None:
