@@ -50,15 +50,19 @@ class Wheel:
 
 
 def eccentric(
-    fit: Fit, spread: float, nu: float, waves: tuple[Wave, ...], wheel: Wheel, *, turned: bool, points: Points
-) -> Eccentric | None:
-    """Eccentricity of the teeth from the wave once per turn; None where that is not fitted or the radius is not stated."""
+    fit: Fit, spread: float, nu: float, waves: tuple[Wave, ...], wheel: Wheel, *, turned: bool, points: Points,
+    grows: int = 1,
+) -> Eccentric | None:  # fmt: skip
+    """Eccentricity of the teeth from the wave once per turn; None where that is not fitted or the radius is not stated.
+
+    grows  +1 where stations that grow go counter-clockwise; -1 for teeth numbered clockwise, forward the way numbers grow
+    """
     wave = next((w for w in waves if w.harmonic == 1.0), None)
     if wave is None or wheel.radius is None:
         return None
     both = any(term.kind == "swing" for term in fit.terms)
     alpha = wheel.pressure_angle
-    side = _side(points, turned=turned)
+    side = grows * _side(points, turned=turned)
     flanks = "both" if both else "one" if side else "unknown"
     lean = 0.0 if both or alpha is None else side * alpha
     slack = 0.0 if both or side else alpha or 0.0
@@ -72,7 +76,7 @@ def eccentric(
         wheel.tooth(direction),
         flanks,
         0 if both else side,
-        _looks(fit, spread, nu, alpha) if both and alpha is not None else "",
+        _looks(fit, spread, nu, alpha, grows) if both and alpha is not None else "",
         wave.open if alpha is not None or both else wave.open or "the pressure angle of the teeth is not stated",
     )
 
@@ -88,17 +92,18 @@ def _side(points: Points, *, turned: bool) -> int:
     return int(found[0]) if turned else -int(found[0])
 
 
-def _looks(fit: Fit, spread: float, nu: float, alpha: float) -> str:
+def _looks(fit: Fit, spread: float, nu: float, alpha: float, grows: int) -> str:
     """Whether both flanks differ as those of an eccentric ring do, or not at all, as those of a divided one.
 
     Forward less reverse is 2 tan(alpha) (-b, a) where (a, b) is the mean of both, in the frame of the file. Places of the
     work: forward is side -1, the mean (e/r) sin(phi - theta) has a = (e/r) sin phi, b = -(e/r) cos phi, and the difference is
     2 (e/r) tan(alpha) cos(phi - theta).  Turns of the work: forward is side +1 and d(Phi) = -delta(-Phi): the same again.
+    Teeth numbered clockwise: forward, the way numbers grow, is side +1, so the difference has the other sign.
     """
     swing = Term("swing", 1.0)
     mean = fit.vector(Term("wave", 1.0))
     seen, covariance = fit.vector(swing), fit.covariance(swing) * spread
-    base = 2.0 * math.tan(alpha) * np.array([[0.0, -1.0], [1.0, 0.0]])
+    base = grows * 2.0 * math.tan(alpha) * np.array([[0.0, -1.0], [1.0, 0.0]])
     expected = base @ mean
     own = base @ (fit.covariance(Term("wave", 1.0)) * spread) @ base.T
     far = [_chance(seen - expected, covariance + own, nu), _chance(seen, covariance, nu)]

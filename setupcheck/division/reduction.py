@@ -85,6 +85,7 @@ def reduce(
         )
     wheel = Wheel(count, radius, pressure_angle, start, turn)
     turned = readings.kind == "turned" or (turns_with_work and readings.kind == "angle")
+    grows = turn if readings.kind == "tooth" else 1  # forward is the way stations grow, numbers of teeth among them
     ready = prepare(readings, count=count, worm_ratio=worm_ratio, start=start, turn=turn)
     names = _asked(worm_ratio, head_ratio)
     found = _found(ready.points, list(names))
@@ -99,7 +100,7 @@ def reduce(
         Unseen(names[a.harmonic], a.harmonic, a.why, tuple(names[h] for h in a.taken_for)) for a in found.plan.alike
     )
     own = next((w for w in waves if worm_ratio is not None and w.harmonic == worm_ratio), None)
-    off = eccentric(found.fit, found.spread, found.nu, waves, wheel, turned=turned, points=found.points)
+    off = eccentric(found.fit, found.spread, found.nu, waves, wheel, turned=turned, points=found.points, grows=grows)
     return Reduced(
         verdict="open" if reasons or not waves or waves[0].open else "told",
         reasons=tuple(dict.fromkeys([*reasons, *_first(waves), *_nothing(found, waves)])),
@@ -112,7 +113,7 @@ def reduce(
         waves=waves,
         unseen=unseen,
         eccentric=off,
-        flanks=_flanks(found, turned),
+        flanks=_flanks(found, turned, grows),
         worm=own,
         scatter=found.scatter.repeat if found.scatter.repeat_nu >= 3 and found.scatter.repeat is not None
         else _root(found.fit.square / found.fit.nu if found.fit.nu else math.nan),
@@ -134,6 +135,10 @@ def reduce(
         repaired=bool(ready.whole),
         against=ready.against,
     )  # fmt: skip
+
+
+def _many(stations: int) -> str:
+    return f"{stations} station{'' if stations == 1 else 's'}"
 
 
 def _root(x: float) -> float:
@@ -220,7 +225,7 @@ def _nothing(found: _Found, waves: Sequence[Wave]) -> list[str]:
     if waves:
         return []
     return [
-        f"{found.plan.stations} stations cannot tell eccentricity from drift and zero: read at 5 or more, better at 8 or 12"
+        f"{_many(found.plan.stations)} cannot tell eccentricity from drift and zero: read at 5 or more, better at 8 or 12"
     ]
 
 
@@ -254,13 +259,16 @@ def _waves(found: _Found, names: dict[float, str], turned: bool, reasons: Sequen
     return tuple(made)
 
 
-def _flanks(found: _Found, turned: bool) -> Flanks | None:
-    """Mean and difference of both flanks in the first wave; turned as in `eccentric.py` where stations are turns."""
+def _flanks(found: _Found, turned: bool, grows: int) -> Flanks | None:
+    """Mean and difference of both flanks in the first wave; turned and grows as in `eccentric.py`.
+
+    Forward of the difference is the way places of the work grow counter-clockwise.
+    """
     wave, swing = Term("wave", 1.0), Term("swing", 1.0)
     if wave not in found.fit.terms or swing not in found.fit.terms or not found.spread > 0.0:
         return None
     at = np.concatenate([np.arange(found.fit.values.size)[found.fit.at(term)] for term in (wave, swing)])
-    sense = np.array([-1.0, 1.0, 1.0, -1.0]) if turned else np.ones(4)
+    sense = np.array([-1.0, 1.0, 1.0, -1.0]) if turned else np.array([1.0, 1.0, grows, grows])
     a, b, c, d = (float(x) for x in found.fit.values[at] * sense)
     covariance = found.fit.inverse[np.ix_(at, at)] * found.spread * np.outer(sense, sense)
     return Flanks((a, b, c, d), tuple(tuple(map(float, row)) for row in covariance))

@@ -21,7 +21,8 @@ EXPLAINED = """\
 # MORE, where you have it
 #   run        its number or name. Each run has a zero of its own: forward and reverse pass of one run share it, so set the
 #              instrument anew only between runs, or the backlash cannot be told
-#   direction  forward (stations grow) or reverse. Come to every station from that side, or the backlash gets mixed in
+#   direction  forward (stations grow; of teeth, their numbers) or reverse. Come to every station from that side, or the
+#              backlash gets mixed in
 #   face       left or right, or 1 or 2, of a theodolite
 #   minutes    time of the reading. Without it the lines follow each other evenly
 #   note       for you

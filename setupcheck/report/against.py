@@ -125,6 +125,13 @@ def _move(found: ReadBack, a: Against) -> Iterator[str]:
             rest="      ",
         )
         return
+    if off is not None and off.looks == "neither":
+        yield from wrap(
+            "The flanks differ otherwise than those of an eccentric ring alone: truing the teeth's axis would not put both right",
+            first="  ",
+            rest="      ",
+        )
+        return
     if a.move is None or not a.answers:
         return
     yield from wrap(
@@ -140,8 +147,9 @@ def _move(found: ReadBack, a: Against) -> Iterator[str]:
         now, then, most = (show(one.value * share, unit, digits) for share in (1.0, a.move.then, a.move.most))
         falls.append(f"{one.plan.stack.require.what} falls from {now} to {then}, at most {most}")
     yield from wrap(
-        f"Teeth put true to the axis of use (held again by their pitch circle and bored, or shifted, "
-        f"{show(a.move.amount, *fine)} towards tooth {a.move.tooth}, known to {show(a.move.within, *fine)}): "
+        f"Teeth put true to the axis of use (held again by their pitch circle and bored, the bore then "
+        f"{show(a.move.amount, *fine)} towards tooth {a.move.tooth}, or shifted as much the other way; known to "
+        f"{show(a.move.within, *fine)}): "
         f"{'; '.join(falls)}",
         first="  ",
         rest="      ",

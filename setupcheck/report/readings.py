@@ -24,7 +24,8 @@ FLAGS_SHOWN = 10
 WORDS = {
     "eccentric": "both flanks differ as those of an eccentric ring do",
     "division": "both flanks show the same: it comes from dividing, not from teeth off their axis",
-    "neither": "the flanks differ, but not as those of an eccentric ring: backlash changes for another reason",
+    "neither": "the flanks differ, but not as those of an eccentric ring alone: dividing has a part in it, or backlash changes for "
+    "another reason",
     "undecided": "whether teeth off their axis or dividing made it, both flanks do not decide",
 }
 

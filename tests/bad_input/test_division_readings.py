@@ -57,7 +57,7 @@ REFUSED: dict[str, tuple[str | bytes, str]] = {
     "latin": (HEAD.encode() + b"0,1\n10\xb0,2\n", "t.csv:3: the line is not UTF-8"),
     "long line": (HEAD + "0," + "1" * 20_000 + "\n", "t.csv:2: the line has more than 10000 characters"),
     "cells": (HEAD + "0,1,2\n", "t.csv:2: 3 cells where the first line names 2 columns"),
-    "short": (HEAD + "0\n", "t.csv:2: 1 cells where the first line names 2 columns"),
+    "short": (HEAD + "0\n", "t.csv:2: 1 cell where the first line names 2 columns"),
     "direction": ("angle_deg,deviation_arcsec,direction\n0,1,sideways\n", "'sideways' is not a direction. Write forward"),
     "face": ("angle_deg,deviation_arcsec,face\n0,1,3\n", "'3' is not a face of the instrument. Write left or right"),
     "tooth": ("tooth,deviation_arcsec\n1,0\n73,0\n", "t.csv:3: there is no tooth 73 on a wheel of 72. Write 1 to 72"),
@@ -130,7 +130,7 @@ def test_a_station_that_is_missing_is_named(tmp_path: Path) -> None:
 
 def test_lines_without_a_reading_are_counted(tmp_path: Path) -> None:
     found = reduced(tmp_path, circle(24, extra="15,,1,forward\n"))
-    assert any("1 lines have no reading and are left out: line 52" in said for said in found.limits)
+    assert any("1 line has no reading and is left out: line 52" in said for said in found.limits)
 
 
 def test_fewer_stations_than_waves_are_told(tmp_path: Path) -> None:
