@@ -11,7 +11,8 @@ EXPLAINED = """\
 #   turned_deg turned_gon turned_dms    how far the work was turned from its first station, counter-clockwise seen from +z:
 #                                       for a theodolite or an encoder that rides on the work and turns with it
 #                                       (or keep angle_... and call setupcheck with --turns-with-work)
-#   tooth                               its number: tooth n stands between gap n and gap n + 1 in the order they were cut
+#   tooth                               its number: tooth n stands between gap n and gap n + 1 in the order they were cut;
+#                                       of holes, the number of the hole
 #   Angles may pass 360 and repeat. dms is 10deg 20' 30", 10 20 30 or 10:20:30.
 # READING, one of these columns
 #   deviation_arcsec   already reduced. Positive: the place (with turned_...: the work) stands further counter-clockwise

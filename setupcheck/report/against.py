@@ -142,13 +142,15 @@ def _move(found: ReadBack, a: Against) -> Iterator[str]:
     )
     fine = finer("um", inches=found.loaded.job.units == "in")
     falls = []
-    for one in a.answers:
-        unit, digits = _unit(found, one.plan.stack.unit, one.plan.stack.digits)
-        now, then, most = (show(one.value * share, unit, digits) for share in (1.0, a.move.then, a.move.most))
-        falls.append(f"{one.plan.stack.require.what} falls from {now} to {then}, at most {most}")
+    for answer in a.answers:
+        stack = answer.plan.stack
+        unit, digits = _unit(found, stack.unit, stack.digits)
+        now, then, most = (show(answer.value * share, unit, digits) for share in (1.0, a.move.then, a.move.most))
+        falls.append(f"{stack.require.what} falls from {now} to {then}, at most {most}")
+    those, one = ("Holes", "hole") if found.of.holes else ("Teeth", "tooth")
     yield from wrap(
-        f"Teeth put true to the axis of use (held again by their pitch circle and bored, the bore then "
-        f"{show(a.move.amount, *fine)} towards tooth {a.move.tooth}, or shifted as much the other way; known to "
+        f"{those} put true to the axis of use (held again by their pitch circle and bored, the bore then "
+        f"{show(a.move.amount, *fine)} towards {one} {a.move.tooth}, or shifted as much the other way; known to "
         f"{show(a.move.within, *fine)}): "
         f"{'; '.join(falls)}",
         first="  ",

@@ -36,6 +36,7 @@ REFUSED: dict[str, tuple[str | bytes, str]] = {
     "comments alone": ("# a\n\n", "t.csv: there is nothing in the file but empty lines and comments"),
     "names alone": (HEAD, "t.csv: no line has a reading"),
     "no names": ("0,1\n10,2\n", "t.csv:1: the first line has no names of columns. Write them above, as in angle_deg"),
+    "no names, run": ("0,1.5,0,forward\n0,2,0,forward\n", "t.csv:1: the first line has no names of columns"),
     "unknown column": ("angle_deg,deviaton_arcsec\n", "no column 'deviaton_arcsec'. Did you mean deviation_arcsec?"),
     "no unit": ("angle,deviation_arcsec\n", "'angle' does not say its unit. Write it in the name: angle_deg, angle_gon"),
     "two angles": ("angle_deg,angle_gon,deviation_arcsec\n", "angle_deg and angle_gon both give the station. Keep one"),
@@ -156,7 +157,15 @@ def test_one_face_only_is_named(tmp_path: Path) -> None:
         .replace("forward", "forward,left")
         .replace("reverse", "reverse,left")
     )
-    assert any("all readings are in one face" in said for said in reduced(tmp_path, text).limits)
+    said = next(said for said in reduced(tmp_path, text).limits if "all readings are in one face" in said)
+    assert "an eccentric circle of the instrument reads like an eccentric wheel" in said
+
+
+def test_a_direction_that_the_stations_contradict_is_told(tmp_path: Path) -> None:
+    right = circle(12)
+    wrong = right.replace("forward", "x").replace("reverse", "forward").replace("x", "reverse")
+    assert not any("go the other way" in said for said in reduced(tmp_path, right).limits)
+    assert any("go the other way" in said for said in reduced(tmp_path, wrong).limits)
 
 
 def test_stations_back_and_forth_are_told(tmp_path: Path) -> None:
