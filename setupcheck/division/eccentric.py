@@ -83,7 +83,7 @@ def eccentric(
         wheel.tooth(direction),
         flanks,
         0 if both else side,
-        _looks(fit, spread, nu, alpha, grows) if both and alpha is not None else "",
+        _looks(fit, spread, nu, alpha, grows) if both and alpha else "",
         wave.open if alpha is not None or both else wave.open or "the pressure angle of the teeth is not stated",
     )
 

@@ -173,7 +173,10 @@ def _faces(
     if not told.any():
         return points, None
     if not ((face == 1).any() and (face == 2).any()):
-        limits.append("all readings are in one face: collimation and trunnion of the instrument are not seen")
+        limits.append(
+            "all readings are in one face: collimation and trunnion of the instrument are not seen, and an eccentric circle "
+            "of the instrument reads like an eccentric wheel: read both faces"
+        )
         return points, None
     if not told.all():
         limits.append(f"{int((~told).sum())} readings name no face and count as they stand")
@@ -241,7 +244,9 @@ def _told(readings: Readings, points: Points) -> list[str]:
     found = []
     if readings.empty:
         lines = ", ".join(str(n) for n in readings.empty[:5]) + (" …" if len(readings.empty) > 5 else "")
-        found.append(f"{len(readings.empty)} lines have no reading and are left out: line {lines}")
+        count = len(readings.empty)
+        those = "1 line has no reading and is" if count == 1 else f"{count} lines have no reading and are"
+        found.append(f"{those} left out: line {lines}")
     if (points.direction == 0).any() and points.direction.any():
         found.append(f"{int((points.direction == 0).sum())} readings name no direction, others do")
     turns = 0
@@ -250,8 +255,24 @@ def _told(readings: Readings, points: Points) -> list[str]:
             steps = np.diff(points.theta[(points.run == run) & (points.direction == direction)])
             turns += bool((steps > 1e-9).any() and (steps < -1e-9).any())
     if turns:
-        found.append(f"in {turns} passes the stations go back and forth: drift is followed by time, not by angle")
+        passes = "1 pass" if turns == 1 else f"{turns} passes"
+        found.append(f"in {passes} the stations go back and forth: drift is followed by time, not by angle")
+    if _backwards(readings):
+        found.append(
+            "the stations of a pass go the other way than its direction says: forward is the way stations grow, of teeth their "
+            "numbers. Which flank was read follows from it: if each station was not come to from that side, exchange the names"
+        )
     return found
+
+
+def _backwards(readings: Readings) -> bool:
+    """Whether the stations of some pass, as they are written, all go against the direction it names."""
+    for run in np.unique(readings.run):
+        for direction in (1, -1):
+            steps = direction * np.diff(readings.station[(readings.run == run) & (readings.direction == direction)])
+            if (steps < -1e-9).any() and not (steps > 1e-9).any():
+                return True
+    return False
 
 
 def gap_of(points: Points) -> tuple[float, float, float] | None:

@@ -161,7 +161,7 @@ def _named(names: list[str], place: str) -> list[str]:
     """The names, checked.  Raises: SetupcheckError."""
     while names and not names[-1]:
         names = names[:-1]  # separators a spreadsheet leaves at the end
-    if not names or all(name in EMPTY or _is_number(name) for name in names):
+    if not names or (not set(names) & set(KNOWN) and any(name in EMPTY or _is_number(name) for name in names)):
         raise SetupcheckError(f"{place}: the first line has no names of columns. Write them above, as in {_EXAMPLE}")
     for name, times in Counter(names).items():
         if not name:
@@ -245,7 +245,7 @@ class _Table:
             row.extend([""] * (wanted - len(row)))
             return True
         self.problems.append(
-            f"{self.shown}:{number}: {len(row)} cells where the first line names {wanted} columns. "
+            f"{self.shown}:{number}: {len(row)} cell{'' if len(row) == 1 else 's'} where the first line names {wanted} columns. "
             "Write one cell for each, empty where there is nothing; a decimal is written with a point"
         )
         return False

@@ -138,6 +138,10 @@ def reduce(
     )  # fmt: skip
 
 
+def _many(stations: int) -> str:
+    return f"{stations} station{'' if stations == 1 else 's'}"
+
+
 def _root(x: float) -> float:
     return math.sqrt(x) if x > 0.0 else 0.0
 
@@ -222,7 +226,7 @@ def _nothing(found: _Found, waves: Sequence[Wave]) -> list[str]:
     if waves:
         return []
     return [
-        f"{found.plan.stations} stations cannot tell eccentricity from drift and zero: read at 5 or more, better at 8 or 12"
+        f"{_many(found.plan.stations)} cannot tell eccentricity from drift and zero: read at 5 or more, better at 8 or 12"
     ]
 
 
@@ -257,7 +261,10 @@ def _waves(found: _Found, names: dict[float, str], turned: bool, reasons: Sequen
 
 
 def _flanks(found: _Found, turned: bool, grows: int) -> Flanks | None:
-    """Mean and difference of both flanks in the first wave; turned as in `eccentric.py` where stations are turns."""
+    """Mean and difference of both flanks in the first wave; turned and grows as in `eccentric.py`.
+
+    Forward of the difference is the way places of the work grow counter-clockwise.
+    """
     wave, swing = Term("wave", 1.0), Term("swing", 1.0)
     if wave not in found.fit.terms or swing not in found.fit.terms or not found.spread > 0.0:
         return None

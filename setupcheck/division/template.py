@@ -12,7 +12,8 @@ EXPLAINED = """\
 #                                       for a theodolite or an encoder that rides on the work and turns with it; at 0 the
 #                                       work's mark has to stand at the worm, or all directions are off by as much
 #                                       (or keep angle_... and call setupcheck with --turns-with-work)
-#   tooth                               its number: tooth n stands between gap n and gap n + 1 in the order they were cut
+#   tooth                               its number: tooth n stands between gap n and gap n + 1 in the order they were cut;
+#                                       of holes, the number of the hole
 #   Angles may pass 360 and repeat. dms is 10deg 20' 30", 10 20 30 or 10:20:30.
 # READING, one of these columns
 #   deviation_arcsec   already reduced. Positive: the place (with turned_...: the work) stands further counter-clockwise
@@ -22,7 +23,8 @@ EXPLAINED = """\
 # MORE, where you have it
 #   run        its number or name. Each run has a zero of its own: forward and reverse pass of one run share it, so set the
 #              instrument anew only between runs, or the backlash cannot be told
-#   direction  forward (stations grow) or reverse. Come to every station from that side, or the backlash gets mixed in
+#   direction  forward (stations grow; of teeth, their numbers) or reverse. Come to every station from that side, or the
+#              backlash gets mixed in
 #   face       left or right, or 1 or 2, of a theodolite
 #   minutes    time of the reading. Without it the lines follow each other evenly
 #   note       for you

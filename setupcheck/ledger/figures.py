@@ -350,7 +350,8 @@ class ToothRunOut:
         return merged(vector_pushes(self.offset, 2.0 * self.factor)[1], own)
 
     def undetermined(self) -> tuple[str, ...]:
-        return self.offset.undetermined()
+        mine = (s.cause.missing for s in self.pattern.scatter if s.cause.law == "undetermined" and s.goes_outward)
+        return tuple(dict.fromkeys((*self.offset.undetermined(), *mine)))
 
     def sample(self, draws: Draws) -> Reals:
         around, radials = teeth.angles(self.pattern), draws.radials(self.pattern)

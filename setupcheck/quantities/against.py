@@ -231,6 +231,8 @@ def _move(test: Reduced, radius: float) -> Move | None:
     Source: the readings less their first wave; what is left of its interval counts to both sides.
     """
     off, rest = test.eccentric, test.range_without_first
+    if off is not None and off.looks in ("division", "neither"):
+        return None  # the flanks differ otherwise than teeth off their axis make them: moving those cures one flank at most
     if off is None or off.open or rest is None or off.amount.low <= 0.0 or not test.range > 0.0:
         return None
     left = (off.amount.high - off.amount.low) / 2.0

@@ -57,10 +57,11 @@ class _Errors:
         if bound:
             self.shaped.append(Shaped(self.cause(what, "length", bound, key), shape))
 
-    def unknown(self, what: str, missing: str) -> None:
-        if self.pattern.count > 1:
+    def unknown(self, what: str, missing: str, along: str = "angle") -> None:
+        """An error that nobody states; along a coordinate it leaves the figures open that reach outward, too."""
+        if self.pattern.count > 1 or along == "coordinate":  # a single place is set by its coordinates, too
             cause = Cause(f"{self.head}{what}", "undetermined", self.op, missing=missing)
-            self.scatter.append(Scatter(cause, "angle", 0.0))
+            self.scatter.append(Scatter(cause, along, 0.0))
 
 
 def divided(
@@ -207,7 +208,7 @@ def _of_coordinates(found: _Errors, divide: Divide) -> None:
         ("y", divide.y, tuple(turn * c for c in cosines), sines),
     ):
         if bound is None:
-            found.unknown(f": coordinate {key}", f"{found.path}.{key}")
+            found.unknown(f": coordinate {key}", f"{found.path}.{key}", "coordinate")
         elif bound:
             cause = found.cause(f"coordinate {key}", "length", bound, key)
             found.scatter.append(Scatter(cause, "coordinate", bound, around, outward))

@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+import math
+
 from setupcheck.division.readings import Readings
 from setupcheck.division.reduction import reduce
 from setupcheck.division.results import Reduced
@@ -19,7 +21,8 @@ class TeethRead:
 
     name  as in `of` of a requirement;  count, radius [mm], pressure_angle [rad], start [rad], turn  as the ledger has them
     worm_ratio  turns of their own worm for one of theirs, else None;  head_ratio  of the head that cut them, else None
-    missing     keys of the job that would tell more
+    missing     keys of the job that would tell more;  holes  holes or slots, which have no flanks
+    Tooth n stands half a pitch on from gap n; start is set back so much for holes, whose number is that of the place itself.
     """
 
     name: str
@@ -31,6 +34,7 @@ class TeethRead:
     start: float
     turn: int
     missing: tuple[str, ...]
+    holes: bool = False
 
 
 def teeth_of(floor: Floor, of: str | None = None) -> TeethRead:
@@ -67,19 +71,21 @@ def teeth_of(floor: Floor, of: str | None = None) -> TeethRead:
         raise SetupcheckError(f"{file}: {name} is made nowhere, so nothing says where its first place stands")
     own = job.worm is not None and wheel is not None and (wheel.part, wheel.surface) == (part, surface)
     starts = job.worm.starts if own and job.worm is not None else None
+    holes = not isinstance(known[name], Toothing)
     missing = ["worm.starts"] if own and starts is None else []
-    if pattern.pressure_angle is None and isinstance(known[name], Toothing):
+    if pattern.pressure_angle is None and not holes:
         missing.append("worm.pressure_angle" if own else f"parts.{part}.surfaces.{surface}.pressure_angle")
     return TeethRead(
         name,
         pattern.count,
         pattern.radius,
-        pattern.pressure_angle if isinstance(known[name], Toothing) else 0.0,
+        0.0 if holes else pattern.pressure_angle,
         pattern.count / starts if starts else None,
         _head_ratio(floor, part, surface),
-        pattern.start,
+        pattern.start - (pattern.turn * math.pi / pattern.count if holes else 0.0),
         pattern.turn,
         tuple(missing),
+        holes,
     )
 
 

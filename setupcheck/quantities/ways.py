@@ -37,8 +37,8 @@ def own_error(floor: Floor, setup: Setup, count: int) -> str | Known | Open:
         path = f"setups.{setup.op}.divide."
         own = floor.loaded.owned(*(p for p in floor.loaded.own if p.startswith(path)))
         return Known("stated" if all(map(is_own, own)) else "typical", own)
-    key = "x" if divide.by == "x-y" else "wheel"
-    return "typical" if typical_errors(divide) else Open((f"setups.{setup.op}.divide.{key}",))
+    keys = ("x", "y") if divide.by == "x-y" else ("wheel",)
+    return "typical" if typical_errors(divide) else Open(tuple(f"setups.{setup.op}.divide.{key}" for key in keys))
 
 
 def _cuts_teeth(floor: Floor, setup: Setup) -> bool:

@@ -125,6 +125,13 @@ def _move(found: ReadBack, a: Against) -> Iterator[str]:
             rest="      ",
         )
         return
+    if off is not None and off.looks == "neither":
+        yield from wrap(
+            "The flanks differ otherwise than those of an eccentric ring alone: truing the teeth's axis would not put both right",
+            first="  ",
+            rest="      ",
+        )
+        return
     if a.move is None or not a.answers:
         return
     yield from wrap(
@@ -135,14 +142,16 @@ def _move(found: ReadBack, a: Against) -> Iterator[str]:
     )
     fine = finer("um", inches=found.loaded.job.units == "in")
     falls = []
-    for one in a.answers:
-        unit, digits = _unit(found, one.plan.stack.unit, one.plan.stack.digits)
-        now, then, most = (show(one.value * share, unit, digits) for share in (1.0, a.move.then, a.move.most))
-        falls.append(f"{one.plan.stack.require.what} falls from {now} to {then}, at most {most}")
+    for answer in a.answers:
+        stack = answer.plan.stack
+        unit, digits = _unit(found, stack.unit, stack.digits)
+        now, then, most = (show(answer.value * share, unit, digits) for share in (1.0, a.move.then, a.move.most))
+        falls.append(f"{stack.require.what} falls from {now} to {then}, at most {most}")
+    those, one = ("Holes", "hole") if found.of.holes else ("Teeth", "tooth")
     yield from wrap(
-        f"Teeth stand {show(a.move.amount, *fine)} towards tooth {a.move.tooth} off the axis of use, known to "
-        f"{show(a.move.within, *fine)}. Put true to it (held again by their pitch circle and bored, or shifted away from that "
-        "tooth): "
+        f"{those} stand {show(a.move.amount, *fine)} towards {one} {a.move.tooth} off the axis of use, known to "
+        f"{show(a.move.within, *fine)}. Put true to it (held again by their pitch circle and bored, the bore then as much "
+        f"towards that {one}, or shifted as much the other way): "
         f"{'; '.join(falls)}",
         first="  ",
         rest="      ",

@@ -74,7 +74,12 @@ def _offer(book: Book, asked: str, name: str) -> str:
     if asked in FORMULAS:
         has = ", ".join(dict.fromkeys(stack_of(s).require.what for s in scopes)) or "nothing"
         return f"The job does not require it. It requires: {has}"
+    groups = list(dict.fromkeys(quantity.partition(".")[0] for quantity in sorted(book.quantities)))
+    group = name.rstrip(".")
+    if group in groups:
+        return f"Of {group} there are {', '.join(q for q in sorted(book.quantities) if q.startswith(f'{group}.'))}"
     near = nearest(name, list(book.quantities)) or nearest(asked, whole)
     if near is not None:
         return f"Did you mean {near}?"
-    return f"Known: {', '.join(sorted(book.quantities))}; and require[1] to require[{len(scopes)}]"
+    has = f"require[1] to require[{len(scopes)}], and numbers" if scopes else "numbers"
+    return f"Known are {has} of {', '.join(groups)}; write one of these words, as in working JOB divide, to see its numbers"

@@ -121,7 +121,7 @@ def _steps(book: Book, scope: Scope, table: IndexTable) -> Iterator[str]:
     if fits and not any(holes for _, _, holes in fits):
         yield f"every circle {owner} fits: the pin comes back into its hole, no sector arms are needed"
     elif fits:
-        told = ", ".join(f"{c}: {f'{whole} turns ' * bool(whole)}{holes}" for c, whole, holes in fits)
+        told = ", ".join(f"{c}: {_turns(whole) * bool(whole)}{holes}" for c, whole, holes in fits)
         yield f"circles {owner} that fit, and the holes of a step: {told}"
     other = book.get("divide.other_ways", scope)
     if isinstance(other, Known):
@@ -134,6 +134,10 @@ def _steps(book: Book, scope: Scope, table: IndexTable) -> Iterator[str]:
             f"{show(arc, 'thou', 2) if book.inches else show(arc, 'um', 1)} along its circle; counted from the start, so "
             "nothing adds up"
         )
+
+
+def _turns(whole: int) -> str:
+    return f"{whole} turn{'' if whole == 1 else 's'} "
 
 
 def _hands(table: IndexTable) -> Iterator[str]:

@@ -24,7 +24,8 @@ FLAGS_SHOWN = 10
 WORDS = {
     "eccentric": "both flanks differ as those of an eccentric ring do",
     "division": "both flanks show the same: it comes from dividing, not from teeth off their axis",
-    "neither": "the flanks differ, but not as those of an eccentric ring: backlash changes for another reason",
+    "neither": "the flanks differ, but not as those of an eccentric ring alone: dividing has a part in it, or backlash "
+    "changes for another reason",
     "undecided": "whether teeth off their axis or dividing made it, both flanks do not decide",
 }
 
@@ -81,14 +82,11 @@ def _answers(found: ReadBack) -> Iterator[str]:
         yield from wrap("with the whole pitches taken off", first="  - ", rest="    ")
     e = r.eccentric
     if e is not None:
-        told = e.amount.low > 0.0
-        text = (
-            f"eccentric by {_fine(found, e.amount)}"
-            if told or math.isinf(e.amount.high)
-            else f"eccentric by less than {_one(found, e.amount.high)}"
-        )
+        told, place = e.amount.low > 0.0, "hole" if found.of.holes else "tooth"
+        by = _fine(found, e.amount) if told or math.isinf(e.amount.high) else f"less than {_one(found, e.amount.high)}"
+        text = f"{'as if ' if e.looks in ('division', 'neither') else ''}eccentric by {by}"
         if told and e.within is not None:
-            text += f", high at tooth {e.tooth} ({_deg(e.direction)} ±{fixed(math.degrees(e.within), 1)})"
+            text += f", high at {place} {e.tooth} ({_deg(e.direction)} ±{fixed(math.degrees(e.within), 1)})"
         elif told:
             text += ", towards where is not told"
         yield from wrap(_open(text, "" if e.open in r.reasons else e.open), first="  ", rest="      ")

@@ -126,7 +126,7 @@ def _formula(told: tuple[str, str], first: str = "  ") -> Iterator[str]:
 def _stated(book: Book, of: object) -> Iterator[str]:
     """Formula and source as the function itself states them; another function it names is told by its quantity."""
     of_function = {getattr(q.of, "__name__", ""): name for name, q in reversed(book.quantities.items())}
-    text = (inspect.getdoc(of) or "").partition(">>>")[0]
+    text = re.sub(r"\bNone\b", "no answer", (inspect.getdoc(of) or "").partition(">>>")[0])
     text = _NAMED.sub(lambda found: f"`{of_function.get(found[1], found[1])}`", text)
     for paragraph in filter(None, (line.strip() for line in text.splitlines())):
         yield from wrap(paragraph, first="  ", rest="    ")

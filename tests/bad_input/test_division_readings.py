@@ -36,6 +36,7 @@ REFUSED: dict[str, tuple[str | bytes, str]] = {
     "comments alone": ("# a\n\n", "t.csv: there is nothing in the file but empty lines and comments"),
     "names alone": (HEAD, "t.csv: no line has a reading"),
     "no names": ("0,1\n10,2\n", "t.csv:1: the first line has no names of columns. Write them above, as in angle_deg"),
+    "no names, run": ("0,1.5,0,forward\n0,2,0,forward\n", "t.csv:1: the first line has no names of columns"),
     "unknown column": ("angle_deg,deviaton_arcsec\n", "no column 'deviaton_arcsec'. Did you mean deviation_arcsec?"),
     "no unit": ("angle,deviation_arcsec\n", "'angle' does not say its unit. Write it in the name: angle_deg, angle_gon"),
     "two angles": ("angle_deg,angle_gon,deviation_arcsec\n", "angle_deg and angle_gon both give the station. Keep one"),
@@ -57,7 +58,7 @@ REFUSED: dict[str, tuple[str | bytes, str]] = {
     "latin": (HEAD.encode() + b"0,1\n10\xb0,2\n", "t.csv:3: the line is not UTF-8"),
     "long line": (HEAD + "0," + "1" * 20_000 + "\n", "t.csv:2: the line has more than 10000 characters"),
     "cells": (HEAD + "0,1,2\n", "t.csv:2: 3 cells where the first line names 2 columns"),
-    "short": (HEAD + "0\n", "t.csv:2: 1 cells where the first line names 2 columns"),
+    "short": (HEAD + "0\n", "t.csv:2: 1 cell where the first line names 2 columns"),
     "direction": ("angle_deg,deviation_arcsec,direction\n0,1,sideways\n", "'sideways' is not a direction. Write forward"),
     "face": ("angle_deg,deviation_arcsec,face\n0,1,3\n", "'3' is not a face of the instrument. Write left or right"),
     "tooth": ("tooth,deviation_arcsec\n1,0\n73,0\n", "t.csv:3: there is no tooth 73 on a wheel of 72. Write 1 to 72"),
@@ -130,7 +131,7 @@ def test_a_station_that_is_missing_is_named(tmp_path: Path) -> None:
 
 def test_lines_without_a_reading_are_counted(tmp_path: Path) -> None:
     found = reduced(tmp_path, circle(24, extra="15,,1,forward\n"))
-    assert any("1 lines have no reading and are left out: line 52" in said for said in found.limits)
+    assert any("1 line has no reading and is left out: line 52" in said for said in found.limits)
 
 
 def test_fewer_stations_than_waves_are_told(tmp_path: Path) -> None:
@@ -156,7 +157,15 @@ def test_one_face_only_is_named(tmp_path: Path) -> None:
         .replace("forward", "forward,left")
         .replace("reverse", "reverse,left")
     )
-    assert any("all readings are in one face" in said for said in reduced(tmp_path, text).limits)
+    said = next(said for said in reduced(tmp_path, text).limits if "all readings are in one face" in said)
+    assert "an eccentric circle of the instrument reads like an eccentric wheel" in said
+
+
+def test_a_direction_that_the_stations_contradict_is_told(tmp_path: Path) -> None:
+    right = circle(12)
+    wrong = right.replace("forward", "x").replace("reverse", "forward").replace("x", "reverse")
+    assert not any("go the other way" in said for said in reduced(tmp_path, right).limits)
+    assert any("go the other way" in said for said in reduced(tmp_path, wrong).limits)
 
 
 def test_stations_back_and_forth_are_told(tmp_path: Path) -> None:

@@ -208,3 +208,36 @@ def test_the_range_is_as_uncertain_as_two_means_of_one_direction(
         file.write_text("\n".join([f"{head},face", *(f"{line},{face}" for line in lines for face in "12")]) + "\n")
     found, a = told(file)
     assert a.scatter == pytest.approx(2.0 * found.reduced.scatter * math.sqrt(2.0 / 3.0))
+
+
+def test_flanks_that_are_not_those_of_an_eccentric_ring_promise_nothing_of_truing(tmp_path: Path) -> None:
+    found, a = told(written(tmp_path, e=0.020, phi=96.0, divided=60.0, at=200.0, noise=0.3))
+    assert found.reduced.eccentric is not None
+    assert "neither" == found.reduced.eccentric.looks
+    assert a.move is None
+    assert "truing the teeth's axis would not put both right" in said(found)
+    found, a = told(written(tmp_path, divided=60.0, at=200.0, noise=0.3))
+    assert found.reduced.eccentric is not None
+    assert "division" == found.reduced.eccentric.looks
+    assert a.move is None
+
+
+@pytest.mark.parametrize("column", ["angle_deg", "tooth"])
+def test_holes_are_told_by_their_own_numbers_and_have_no_flanks(column: str, tmp_path: Path) -> None:
+    rng = random.Random(3)
+    lines = [f"{column},run,direction,deviation_arcsec"]
+    for direction in ("forward", "reverse"):
+        numbers = [*range(1, 25), 1]
+        for n in numbers if direction == "forward" else reversed(numbers):
+            place = (n - 1) * 15.0  # hole 1 stands at the mark
+            off = 30.0 * math.sin(math.radians(45.0 - place)) + rng.gauss(0.0, 0.3)
+            lines.append(f"{n if column == 'tooth' else place},1,{direction},{off:.3f}")
+    file = tmp_path / "holes.csv"
+    file.write_text("\n".join(lines) + "\n", encoding="utf-8")
+    found = read_back(shipped("jobs/index-plate.yaml"), file, instrument=ONE)
+    off = found.reduced.eccentric
+    assert off is not None
+    assert (4, "") == (off.tooth, off.looks)
+    assert "high at hole 4 (" in said(found)
+    assert "towards hole 4 off the axis" in said(found)
+    assert "tooth" not in said(found) and "flank" not in said(found)

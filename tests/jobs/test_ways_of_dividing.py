@@ -350,6 +350,21 @@ def test_no_corner_of_the_coordinates_passes_the_worst_case(case: str) -> None:
 def test_holes_without_the_errors_of_their_coordinates_are_open() -> None:
     found = reviewed(plate("{by: x-y, x: 5 um}"))
     assert "setups.10.divide.y" in {p for f in found.evaluation.findings if f.verdict == "open" for p in f.missing}
+    assert [Open(("setups.10.divide.y",))] * 5 == [
+        found.book.get("stack.combined", scope) for scope in found.book.instances("stack")
+    ]
+    found = reviewed(plate("{by: x-y}"))
+    assert [Open(("setups.10.divide.x", "setups.10.divide.y"))] * 5 == [
+        found.book.get("stack.combined", scope) for scope in found.book.instances("stack")
+    ]
+
+
+def test_a_single_place_by_coordinates_is_open_without_them() -> None:
+    text = plate("{by: x-y}").replace(f"count: {HOLES}", "count: 1")
+    lines = [line for line in text.splitlines() if "chord" not in line and "gap-centre" not in line]
+    found = reviewed("\n".join(lines))
+    missing = {p for f in found.evaluation.findings if f.verdict == "open" for p in f.missing}
+    assert {"setups.10.divide.x", "setups.10.divide.y"} <= missing
 
 
 def test_teeth_are_not_set_by_coordinates() -> None:

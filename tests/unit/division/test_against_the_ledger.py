@@ -69,3 +69,31 @@ def test_a_flank_nobody_names_leaves_the_pressure_angle_open(tmp_path: Path) -> 
     assert found.flanks == "unknown"
     assert found.within is not None
     assert found.within >= ALPHA
+
+
+@pytest.mark.parametrize("turn", [1, -1])
+@pytest.mark.parametrize("how", ["both", "forward", "reverse"])
+def test_forward_along_numbered_teeth_is_the_way_their_numbers_grow(turn: int, how: str, tmp_path: Path) -> None:
+    pattern = Pattern(24, 54.0, turn=turn, pressure_angle=ALPHA)
+    offset = 0.010 * cmath.exp(1j * math.radians(96.0))
+    wanted = pattern.start + turn * math.tau * (np.arange(1, 25) - 0.5) / 24
+    rng = np.random.default_rng(1)
+    lines = ["tooth,deviation_arcsec,direction"]
+    for direction in {"both": (1, -1), "forward": (1,), "reverse": (-1,)}[how]:
+        # teeth that pass with growing angles turn the work clockwise, against the clockwise wall
+        wave = flank_turn(pattern, side=-direction * turn, driven=True) * offset
+        arcs = (wave * np.exp(-1j * wanted)).imag / pattern.radius / ARCSEC + rng.normal(scale=0.01, size=24)
+        told = sorted(enumerate(arcs, 1), key=lambda x: direction * x[0])
+        lines += [f"{n},{d:.6f},{'forward' if direction > 0 else 'reverse'}" for n, d in told]
+    file = tmp_path / "test.csv"
+    file.write_text("\n".join(lines))
+    test = reduce(read_test(file), count=24, radius=54.0, pressure_angle=ALPHA, turn=turn)
+    found = test.eccentric
+    assert found is not None
+    assert found.amount.value == pytest.approx(0.010, rel=0.01)
+    assert math.degrees(found.direction) == pytest.approx(96.0, abs=1.0)
+    if how == "both":
+        assert found.looks == "eccentric"
+        assert test.flanks is not None
+        a, b, c, d = test.flanks.vector  # forward less reverse is 2 tan(alpha) (-b, a), as on places that grow
+        assert [c, d] == pytest.approx([-2.0 * math.tan(ALPHA) * b, 2.0 * math.tan(ALPHA) * a], abs=0.2 * ARCSEC)

@@ -153,3 +153,17 @@ def test_a_reading_with_its_high_spot_is_shown_whole() -> None:
     reading = "runout: {at_most: 6 um, measured: 4 um, uncertainty: 1 um"
     found = working("run-out", changed(WHEEL, (reading, f"{reading}, high_at: tooth 14")))
     assert "direction known, measured; at most 6 um, measured 4 um, uncertainty 1 um, high at tooth 14 (line" in found
+
+
+def test_a_group_shows_its_numbers_and_an_unknown_word_the_groups() -> None:
+    for asked in ("divide", "divide."):
+        assert "Of divide there are divide.advice, divide.circle, " in refused(asked)
+        assert "tilt." not in refused(asked)
+    said = refused("zzz")
+    assert "Known are require[1] to require[12], and numbers of allow, clamp, " in said
+    assert "divide.circle" not in said
+
+
+def test_a_number_that_may_be_missing_is_told_without_the_language_it_is_written_in() -> None:
+    assert "no answer where" in working("divide.step")
+    assert "None" not in working("divide.step")
