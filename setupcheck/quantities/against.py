@@ -18,7 +18,9 @@ from setupcheck.ledger import harmonic
 from setupcheck.ledger.causes import Cause
 from setupcheck.ledger.combine import Draws
 from setupcheck.ledger.figures import Tooth
+from setupcheck.ledger.route import Pattern
 from setupcheck.ledger.running import AsItRuns
+from setupcheck.ledger.teeth import folded
 from setupcheck.quantities.book import Book, Known, Open, Scope
 from setupcheck.quantities.judged import Result
 from setupcheck.quantities.scopes import stack_of
@@ -152,10 +154,13 @@ def _factor(result: Result, radius: float) -> float | None:
 
 
 def _waves(test: Reduced, ring: Tooth, draws: Draws) -> Iterator[WaveAgainst]:
-    radius = ring.pattern.radius
+    """Waves against the plan. Read at whole pitches, a quick wave is the slow one that so many places see of it."""
+    radius, count = ring.pattern.radius, ring.pattern.count
     for wave in test.waves:
-        number = round(wave.harmonic)
-        if abs(wave.harmonic - number) > 1e-9 or not 1 <= number < ring.pattern.count / 2.0:
+        number = folded(round(wave.harmonic), count)
+        if abs(wave.harmonic - round(wave.harmonic)) > 1e-9 or not 1 <= number < count / 2.0:
+            continue
+        if number != round(wave.harmonic) and test.places < test.stations:
             continue
         side = test.eccentric.side if test.eccentric is not None else 0
         planned = harmonic.planned_wave(ring, number, draws, side=side)
@@ -179,11 +184,21 @@ def _explained(test: Reduced, wave: Wave, planned: harmonic.Wave, ring: Tooth, d
         mean, spreads = _by_owner({p.cause.identity: (p.cause, _plane(p.drawn)) for p in planned.parts})
         mean = mean + _plane(np.array([planned.known]))[:, 0]
         aa, ab, bb = wave.covariance
-        read, covariance = np.array([wave.a, wave.b]), np.array([[aa, ab], [ab, bb]])
+        turned = _as_slow(round(wave.harmonic), ring.pattern)
+        read, covariance = turned @ (wave.a, wave.b), turned @ np.array([[aa, ab], [ab, bb]]) @ turned.T
     try:
         return explained(radius * read, radius**2 * covariance, expected=mean, spreads=spreads)
     except ValueError:
         return None
+
+
+def _as_slow(harmonic: int, pattern: Pattern) -> Reals:
+    """What makes of a wave's vector that of the slow wave which the gaps see, (2, 2): turned by whole waves a pitch times the
+    first gap's direction, and mirrored where it runs the other way.  Source: sampling at N equal steps, derived here."""
+    slow = folded(harmonic, pattern.count)
+    sense = 1 if harmonic % pattern.count == slow else -1
+    by = (harmonic - sense * slow) * pattern.start
+    return np.array([[1.0, 0.0], [0.0, sense]]) @ [[math.cos(by), math.sin(by)], [-math.sin(by), math.cos(by)]]
 
 
 def _plane(values: NDArray[np.generic]) -> Reals:

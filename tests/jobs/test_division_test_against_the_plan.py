@@ -9,11 +9,14 @@ import subprocess
 import sys
 from pathlib import Path
 
+import numpy as np
 import pytest
 
 from setupcheck.flow import ReadBack, read_back
 from setupcheck.jobfile.reading import read_job_text
-from setupcheck.quantities.against import Against
+from setupcheck.ledger.route import Pattern
+from setupcheck.ledger.teeth import angles, folded
+from setupcheck.quantities.against import Against, _as_slow
 from setupcheck.report.against import verdict
 from setupcheck.report.readings import as_data, as_text
 from setupcheck.shipped import shipped
@@ -208,3 +211,38 @@ def test_the_range_is_as_uncertain_as_two_means_of_one_direction(
         file.write_text("\n".join([f"{head},face", *(f"{line},{face}" for line in lines for face in "12")]) + "\n")
     found, a = told(file)
     assert a.scatter == pytest.approx(2.0 * found.reduced.scatter * math.sqrt(2.0 / 3.0))
+
+
+@pytest.mark.parametrize(("every", "seen"), [(1, True), (0.5, False)])
+def test_the_worm_of_the_head_is_set_against_its_slow_wave_on_the_teeth(
+    every: float, seen: bool, tmp_path: Path
+) -> None:
+    """40 turns of the crank on 72 teeth are 32 waves of the ring; between the teeth no slow wave stands for them."""
+    rng = random.Random(4)
+    lines = ["angle_deg,run,direction,deviation_arcsec"]
+    for run in (1, 2):
+        for direction, side in (("forward", -1), ("reverse", 1)):
+            for k in range(round(72 / every) + 1):
+                off = 15.0 * math.cos(40.0 * math.radians(5.0 * every * k) - 0.7) + rng.gauss(0.0, 0.5) + 4.0 * side
+                lines.append(f"{5.0 * every * k},{run},{direction},{off:.3f}")
+    file = tmp_path / "test.csv"
+    file.write_text("\n".join(lines) + "\n")
+    found, a = told(file)
+    crank = [one for one in a.waves if one.wave.harmonic == 40.0]
+    assert bool(crank) == seen
+    if seen:
+        assert crank[0].usual == pytest.approx(4.0 * ARCSEC * RADIUS, rel=0.1)  # a disc of 4", and a little scatter
+        assert crank[0].explained is not None
+        assert crank[0].explained.owners[0].name == "op 40, dividing"
+        assert "once per crank turn of the head that cut it: 3.9 um along the pitch circle" in said(found)
+
+
+@pytest.mark.parametrize(("harmonic", "turn"), [(40, 1), (40, -1), (100, 1), (76, -1), (5, 1)])
+def test_a_quick_wave_is_the_slow_one_at_every_gap(harmonic: int, turn: int) -> None:
+    ring = Pattern(72, RADIUS, turn=turn, start=0.3)
+    slow = folded(harmonic, 72)
+    wave = np.array([3.0, -1.0])
+    a, b = _as_slow(harmonic, ring) @ wave
+    theta = angles(ring)
+    seen = 3.0 * np.cos(harmonic * theta) - np.sin(harmonic * theta)
+    assert a * np.cos(slow * theta) + b * np.sin(slow * theta) == pytest.approx(seen)
