@@ -162,16 +162,23 @@ def _waves(test: Reduced, ring: Tooth, draws: Draws) -> Iterator[WaveAgainst]:
             continue
         if number != round(wave.harmonic) and test.places < test.stations:
             continue
-        side = test.eccentric.side if test.eccentric is not None else 0
-        planned = harmonic.planned_wave(ring, number, draws, side=side)
+        found = []
+        for side in _sides(test):
+            planned = harmonic.planned_wave(ring, number, draws, side=side)
+            told = None if wave.open else _explained(test, wave, planned, ring, draws)
+            found.append((told, float(np.quantile(np.abs(planned.drawn), 0.95))))
+        told, usual = max(found, key=lambda one: one[0].beyond if one[0] is not None else 0.0)
         yield WaveAgainst(
-            wave,
-            radius * wave.length.value,
-            radius * wave.length.low,
-            radius * wave.length.high,
-            float(np.quantile(np.abs(planned.drawn), 0.95)),
-            None if wave.open else _explained(test, wave, planned, ring, draws),
+            wave, radius * wave.length.value, radius * wave.length.low, radius * wave.length.high, usual, told
         )
+
+
+def _sides(test: Reduced) -> tuple[int, ...]:
+    """Flanks a test may have been read on: of one that nobody names, the flank that suits the plan better counts."""
+    off = test.eccentric
+    if off is None:
+        return (0,)
+    return (1, -1) if off.flanks == "unknown" else (off.side,)
 
 
 def _explained(test: Reduced, wave: Wave, planned: harmonic.Wave, ring: Tooth, draws: Draws) -> Explained | None:

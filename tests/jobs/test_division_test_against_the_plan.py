@@ -246,3 +246,22 @@ def test_a_quick_wave_is_the_slow_one_at_every_gap(harmonic: int, turn: int) -> 
     theta = angles(ring)
     seen = 3.0 * np.cos(harmonic * theta) - np.sin(harmonic * theta)
     assert a * np.cos(slow * theta) + b * np.sin(slow * theta) == pytest.approx(seen)
+
+
+@pytest.mark.parametrize("flank", ["forward", "reverse"])
+def test_a_flank_nobody_names_accuses_no_setup_of_what_the_plan_knows(flank: str, tmp_path: Path) -> None:
+    """The hub was bored 20 um off towards gap 19, as the dial said: read on one flank the wave stands 20 deg beside it."""
+    text = JOB.read_text(encoding="utf-8")
+    was = "runout: {at_most: 6 um, measured: 4 um, uncertainty: 1 um}"
+    assert was in text
+    text = text.replace(was, "runout: {at_most: 60 um, measured: 40 um, uncertainty: 1 um, high_at: gap 19}")
+    file = written(tmp_path, e=0.020, phi=-90.0, noise=0.1, directions=(flank,))  # gaps follow clockwise
+    named, _ = told(file, text=text)
+    file.write_text(
+        "\n".join(",".join(row.split(",")[:2] + row.split(",")[3:]) for row in file.read_text().splitlines())
+    )
+    unnamed, _ = told(file, text=text)
+    for found in (named, unnamed):
+        assert isinstance(found.against, Against)
+        explained = found.against.waves[0].explained
+        assert explained is not None and explained.beyond > 0.9
