@@ -15,6 +15,7 @@ import pytest
 from setupcheck.flow import ReadBack, read_back
 from setupcheck.jobfile.reading import read_job_text
 from setupcheck.ledger.route import Pattern
+from setupcheck.ledger.running import AsItRuns
 from setupcheck.ledger.teeth import angles, folded
 from setupcheck.quantities.against import Against, _as_slow
 from setupcheck.report.against import verdict
@@ -265,3 +266,19 @@ def test_a_flank_nobody_names_accuses_no_setup_of_what_the_plan_knows(flank: str
         assert isinstance(found.against, Against)
         explained = found.against.waves[0].explained
         assert explained is not None and explained.beyond > 0.9
+
+
+def test_readings_at_whole_pitches_say_what_they_leave_out_where_the_plan_has_it(tmp_path: Path) -> None:
+    """The spindle's wheel is planned by its exact gaps: within a pitch they add to the index what no station reads."""
+    job = shipped("jobs/wheel-on-spindle.yaml")
+    count = 60
+    for places, said_so in ((20, True), (2 * count, False)):
+        found = read_back(job, written(tmp_path, e=0.003, count=places), instrument=ONE)
+        assert isinstance(found.against, Against)
+        assert found.against.of == count
+        assert ("within its pitch, planned at most" in said(found)) == said_so
+    figure = found.against.answers[0].plan.figure
+    assert isinstance(figure, AsItRuns)
+    whole = found.against.answers[0].plan.combined.worst.high
+    ring = figure.ring.base() + sum(one.up for one in figure.ring.pushes())
+    assert 0.0 < figure.within_a_pitch() == pytest.approx(whole - ring, rel=1e-6)
