@@ -240,11 +240,12 @@ def _by_owner(parts: Mapping[str, tuple[Cause, Reals]]) -> tuple[Reals, dict[str
 
 
 def owner(cause: Cause) -> str:
-    """Setup that a cause belongs to, dividing apart from holding: they are put right at different places."""
+    """Setup that a cause belongs to; dividing, cutting and holding apart: they are put right at different places."""
     if cause.op is None:
         return "parts as bought, and the place they work in"
     dividing = any(".divide." in path or path.endswith(".divide") for path in cause.paths)
-    return f"op {cause.op}, {'dividing' if dividing else 'holding'}"
+    cutting = any(".cut." in path for path in cause.paths)
+    return f"op {cause.op}, {'dividing' if dividing else 'cutting' if cutting else 'holding'}"
 
 
 def _move(test: Reduced, radius: float) -> Move | None:

@@ -14,10 +14,11 @@ import pytest
 
 from setupcheck.flow import ReadBack, read_back
 from setupcheck.jobfile.reading import read_job_text
+from setupcheck.ledger.causes import Cause
 from setupcheck.ledger.route import Pattern
 from setupcheck.ledger.running import AsItRuns
 from setupcheck.ledger.teeth import angles, folded
-from setupcheck.quantities.against import Against, _as_slow
+from setupcheck.quantities.against import Against, _as_slow, owner
 from setupcheck.report.against import verdict
 from setupcheck.report.readings import as_data, as_text
 from setupcheck.shipped import shipped
@@ -282,3 +283,16 @@ def test_readings_at_whole_pitches_say_what_they_leave_out_where_the_plan_has_it
     whole = found.against.answers[0].plan.combined.worst.high
     ring = figure.ring.base() + sum(one.up for one in figure.ring.pushes())
     assert 0.0 < figure.within_a_pitch() == pytest.approx(whole - ring, rel=1e-6)
+
+
+@pytest.mark.parametrize(
+    ("path", "whose"),
+    [
+        ("setups.30.cut.holes.each.tangential", "op 30, cutting"),
+        ("setups.30.cut.holes.spindle_to_axis.x", "op 30, cutting"),
+        ("setups.30.divide.wheel.once_per_turn", "op 30, dividing"),
+        ("setups.30.hold.centre.runout", "op 30, holding"),
+    ],
+)
+def test_a_reamer_that_wanders_is_no_fault_of_the_holding(path: str, whose: str) -> None:
+    assert owner(Cause("any", "length", 30, high=0.001, paths=(path,))) == whose
