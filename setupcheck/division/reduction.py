@@ -364,7 +364,7 @@ def _range(found: _Found, *, centred: bool = False) -> float:
             rest -= np.asarray(found.fit.vector(term)) @ np.asarray(columns(term, p, slice(None)))
     for direction in np.unique(p.direction):
         mine = p.direction == direction
-        _, at = np.unique(np.round(np.remainder(p.theta[mine], math.tau), 8), return_inverse=True)
+        _, at = np.unique(places(p, whole=True)[mine], return_inverse=True)
         means = np.bincount(at, rest[mine]) / np.bincount(at)
         worst = max(worst, float(means.max() - means.min()))
     return worst

@@ -29,8 +29,9 @@ class AsItRuns:
     planned  the error of a gap cut as planned, its known mean as an arc [mm]
     off      what each setting may be off its plan, figures that start at zero [mm or rad]
     rises    how much error each of them adds [arc for each mm or rad]
-    The range of a sum is at most the sum of the ranges, and the error is taken as straight between the plan and the worst
-    setting, above which it never lies as it grows faster and faster.  Source: geometry, derived here.
+    The range of a sum is at most the sum of the ranges. Between plan and worst, each setting's error is taken as straight,
+    which it stays below as it grows faster and faster; two settings off together may pass their sum by a little, all four stay
+    below it (held at corners in the tests).  Source: geometry, derived here.
     """
 
     ring: Tooth
@@ -45,14 +46,22 @@ class AsItRuns:
     def base(self) -> float:
         return self.ring.base() + sum(rise * one.base() for one, rise in self._added())
 
-    def pushes(self) -> list[Push]:
+    def within_a_pitch(self) -> float:
+        """Most that the gaps add within their pitch, in the figure's unit."""
+        return sum(rise * one.base() for one, rise in self._added()) + sum(push.up for push in self._of_the_gaps())
+
+    def _of_the_gaps(self) -> list[Push]:
+        """What the gaps add within their pitch, in the figure's unit: the planned error, and what settings may add."""
         known = self.planned.mean.real * self.ring.factor
         settings = [
             [Push(p.cause, rise * p.down, rise * p.up, rise * p.known) for p in one.pushes()]
             for one, rise in self._added()
             if rise > 0.0
         ]
-        return merged(self.ring.pushes(), [Push(self.planned, 0.0, known, known)], *settings)
+        return merged([Push(self.planned, 0.0, known, known)], *settings)
+
+    def pushes(self) -> list[Push]:
+        return merged(self.ring.pushes(), self._of_the_gaps())
 
     def undetermined(self) -> tuple[str, ...]:
         return tuple(dict.fromkeys(m for one in (self.ring, *self.off) for m in one.undetermined()))

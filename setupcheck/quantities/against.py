@@ -18,7 +18,9 @@ from setupcheck.ledger import harmonic
 from setupcheck.ledger.causes import Cause
 from setupcheck.ledger.combine import Draws
 from setupcheck.ledger.figures import Tooth
+from setupcheck.ledger.route import Pattern
 from setupcheck.ledger.running import AsItRuns
+from setupcheck.ledger.teeth import folded
 from setupcheck.quantities.book import Book, Known, Open, Scope
 from setupcheck.quantities.judged import Result
 from setupcheck.quantities.scopes import stack_of
@@ -152,21 +154,31 @@ def _factor(result: Result, radius: float) -> float | None:
 
 
 def _waves(test: Reduced, ring: Tooth, draws: Draws) -> Iterator[WaveAgainst]:
-    radius = ring.pattern.radius
+    """Waves against the plan. Read at whole pitches, a quick wave is the slow one that so many places see of it."""
+    radius, count = ring.pattern.radius, ring.pattern.count
     for wave in test.waves:
-        number = round(wave.harmonic)
-        if abs(wave.harmonic - number) > 1e-9 or not 1 <= number < ring.pattern.count / 2.0:
+        number = folded(round(wave.harmonic), count)
+        if abs(wave.harmonic - round(wave.harmonic)) > 1e-9 or not 1 <= number < count / 2.0:
             continue
-        side = test.eccentric.side if test.eccentric is not None else 0
-        planned = harmonic.planned_wave(ring, number, draws, side=side)
+        if number != round(wave.harmonic) and test.places < test.stations:
+            continue
+        found = []
+        for side in _sides(test):
+            planned = harmonic.planned_wave(ring, number, draws, side=side)
+            told = None if wave.open else _explained(test, wave, planned, ring, draws)
+            found.append((told, float(np.quantile(np.abs(planned.drawn), 0.95))))
+        told, usual = max(found, key=lambda one: one[0].beyond if one[0] is not None else 0.0)
         yield WaveAgainst(
-            wave,
-            radius * wave.length.value,
-            radius * wave.length.low,
-            radius * wave.length.high,
-            float(np.quantile(np.abs(planned.drawn), 0.95)),
-            None if wave.open else _explained(test, wave, planned, ring, draws),
+            wave, radius * wave.length.value, radius * wave.length.low, radius * wave.length.high, usual, told
         )
+
+
+def _sides(test: Reduced) -> tuple[int, ...]:
+    """Flanks a test may have been read on: of one that nobody names, the flank that suits the plan better counts."""
+    off = test.eccentric
+    if off is None:
+        return (0,)
+    return (1, -1) if off.flanks == "unknown" else (off.side,)
 
 
 def _explained(test: Reduced, wave: Wave, planned: harmonic.Wave, ring: Tooth, draws: Draws) -> Explained | None:
@@ -179,11 +191,21 @@ def _explained(test: Reduced, wave: Wave, planned: harmonic.Wave, ring: Tooth, d
         mean, spreads = _by_owner({p.cause.identity: (p.cause, _plane(p.drawn)) for p in planned.parts})
         mean = mean + _plane(np.array([planned.known]))[:, 0]
         aa, ab, bb = wave.covariance
-        read, covariance = np.array([wave.a, wave.b]), np.array([[aa, ab], [ab, bb]])
+        turned = _as_slow(round(wave.harmonic), ring.pattern)
+        read, covariance = turned @ (wave.a, wave.b), turned @ np.array([[aa, ab], [ab, bb]]) @ turned.T
     try:
         return explained(radius * read, radius**2 * covariance, expected=mean, spreads=spreads)
     except ValueError:
         return None
+
+
+def _as_slow(harmonic: int, pattern: Pattern) -> Reals:
+    """What makes of a wave's vector that of the slow wave which the gaps see, (2, 2): turned by whole waves a pitch times the
+    first gap's direction, and mirrored where it runs the other way.  Source: sampling at N equal steps, derived here."""
+    slow = folded(harmonic, pattern.count)
+    sense = 1 if harmonic % pattern.count == slow else -1
+    by = (harmonic - sense * slow) * pattern.start
+    return np.array([[1.0, 0.0], [0.0, sense]]) @ [[math.cos(by), math.sin(by)], [-math.sin(by), math.cos(by)]]
 
 
 def _plane(values: NDArray[np.generic]) -> Reals:
@@ -218,11 +240,12 @@ def _by_owner(parts: Mapping[str, tuple[Cause, Reals]]) -> tuple[Reals, dict[str
 
 
 def owner(cause: Cause) -> str:
-    """Setup that a cause belongs to, dividing apart from holding: they are put right at different places."""
+    """Setup that a cause belongs to; dividing, cutting and holding apart: they are put right at different places."""
     if cause.op is None:
         return "parts as bought, and the place they work in"
     dividing = any(".divide." in path or path.endswith(".divide") for path in cause.paths)
-    return f"op {cause.op}, {'dividing' if dividing else 'holding'}"
+    cutting = any(".cut." in path for path in cause.paths)
+    return f"op {cause.op}, {'dividing' if dividing else 'cutting' if cutting else 'holding'}"
 
 
 def _move(test: Reduced, radius: float) -> Move | None:

@@ -6,6 +6,7 @@ import math
 from collections.abc import Iterator
 
 from setupcheck.flow import ReadBack
+from setupcheck.ledger.running import AsItRuns
 from setupcheck.notation import show
 from setupcheck.quantities.against import PUZZLING, Against, Answer, WaveAgainst
 from setupcheck.quantities.book import Open
@@ -48,6 +49,7 @@ def against_the_plan(found: ReadBack) -> Iterator[str]:
     for one in a.answers:
         yield from _answer(found, one)
     yield from _how_sure(a)
+    yield from _within_a_pitch(found, a)
     if found.reduced.verdict != "told":
         yield from wrap("no owner is named while the test itself is open", first="  - ", rest="    ")
         return
@@ -89,6 +91,21 @@ def _how_sure(a: Against) -> Iterator[str]:
         yield from wrap(
             f"read at {a.read} of {a.of} places: what the others are off is not in it", first="  ", rest="      "
         )
+
+
+def _within_a_pitch(found: ReadBack, a: Against) -> Iterator[str]:
+    """What readings at whole pitches leave out of a figure that has the gaps' own error: the plan's, as one figure has it."""
+    one = next((x for x in a.answers if isinstance(x.plan.figure, AsItRuns)), None)
+    if one is None or found.reduced.places < found.reduced.stations:
+        return
+    assert isinstance(one.plan.figure, AsItRuns)
+    unit, digits = _unit(found, one.plan.stack.unit, one.plan.stack.digits)
+    most = one.plan.figure.within_a_pitch()
+    yield from wrap(
+        f"read at whole pitches: what each gap does within its pitch, planned at most {show(most, unit, digits)} of "
+        f"{one.plan.stack.require.what}, is not in it",
+        first="  ", rest="      ",
+    )  # fmt: skip
 
 
 def _wave(found: ReadBack, one: WaveAgainst) -> Iterator[str]:

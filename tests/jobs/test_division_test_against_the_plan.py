@@ -9,11 +9,16 @@ import subprocess
 import sys
 from pathlib import Path
 
+import numpy as np
 import pytest
 
 from setupcheck.flow import ReadBack, read_back
 from setupcheck.jobfile.reading import read_job_text
-from setupcheck.quantities.against import Against
+from setupcheck.ledger.causes import Cause
+from setupcheck.ledger.route import Pattern
+from setupcheck.ledger.running import AsItRuns
+from setupcheck.ledger.teeth import angles, folded
+from setupcheck.quantities.against import Against, _as_slow, owner
 from setupcheck.report.against import verdict
 from setupcheck.report.readings import as_data, as_text
 from setupcheck.shipped import shipped
@@ -241,3 +246,86 @@ def test_holes_are_told_by_their_own_numbers_and_have_no_flanks(column: str, tmp
     assert "high at hole 4 (" in said(found)
     assert "towards hole 4 off the axis" in said(found)
     assert "tooth" not in said(found) and "flank" not in said(found)
+
+
+@pytest.mark.parametrize(("every", "seen"), [(1, True), (0.5, False)])
+def test_the_worm_of_the_head_is_set_against_its_slow_wave_on_the_teeth(
+    every: float, seen: bool, tmp_path: Path
+) -> None:
+    """40 turns of the crank on 72 teeth are 32 waves of the ring; between the teeth no slow wave stands for them."""
+    rng = random.Random(4)
+    lines = ["angle_deg,run,direction,deviation_arcsec"]
+    for run in (1, 2):
+        for direction, side in (("forward", -1), ("reverse", 1)):
+            for k in range(round(72 / every) + 1):
+                off = 15.0 * math.cos(40.0 * math.radians(5.0 * every * k) - 0.7) + rng.gauss(0.0, 0.5) + 4.0 * side
+                lines.append(f"{5.0 * every * k},{run},{direction},{off:.3f}")
+    file = tmp_path / "test.csv"
+    file.write_text("\n".join(lines) + "\n")
+    found, a = told(file)
+    crank = [one for one in a.waves if one.wave.harmonic == 40.0]
+    assert bool(crank) == seen
+    if seen:
+        assert crank[0].usual == pytest.approx(4.0 * ARCSEC * RADIUS, rel=0.1)  # a disc of 4", and a little scatter
+        assert crank[0].explained is not None
+        assert crank[0].explained.owners[0].name == "op 40, dividing"
+        assert "once per crank turn of the head that cut it: 3.9 um along the pitch circle" in said(found)
+
+
+@pytest.mark.parametrize(("harmonic", "turn"), [(40, 1), (40, -1), (100, 1), (76, -1), (5, 1)])
+def test_a_quick_wave_is_the_slow_one_at_every_gap(harmonic: int, turn: int) -> None:
+    ring = Pattern(72, RADIUS, turn=turn, start=0.3)
+    slow = folded(harmonic, 72)
+    wave = np.array([3.0, -1.0])
+    a, b = _as_slow(harmonic, ring) @ wave
+    theta = angles(ring)
+    seen = 3.0 * np.cos(harmonic * theta) - np.sin(harmonic * theta)
+    assert a * np.cos(slow * theta) + b * np.sin(slow * theta) == pytest.approx(seen)
+
+
+@pytest.mark.parametrize("flank", ["forward", "reverse"])
+def test_a_flank_nobody_names_accuses_no_setup_of_what_the_plan_knows(flank: str, tmp_path: Path) -> None:
+    """The hub was bored 20 um off towards gap 19, as the dial said: read on one flank the wave stands 20 deg beside it."""
+    text = JOB.read_text(encoding="utf-8")
+    was = "runout: {at_most: 6 um, measured: 4 um, uncertainty: 1 um}"
+    assert was in text
+    text = text.replace(was, "runout: {at_most: 60 um, measured: 40 um, uncertainty: 1 um, high_at: gap 19}")
+    file = written(tmp_path, e=0.020, phi=-90.0, noise=0.1, directions=(flank,))  # gaps follow clockwise
+    named, _ = told(file, text=text)
+    file.write_text(
+        "\n".join(",".join(row.split(",")[:2] + row.split(",")[3:]) for row in file.read_text().splitlines())
+    )
+    unnamed, _ = told(file, text=text)
+    for found in (named, unnamed):
+        assert isinstance(found.against, Against)
+        explained = found.against.waves[0].explained
+        assert explained is not None and explained.beyond > 0.9
+
+
+def test_readings_at_whole_pitches_say_what_they_leave_out_where_the_plan_has_it(tmp_path: Path) -> None:
+    """The spindle's wheel is planned by its exact gaps: within a pitch they add to the index what no station reads."""
+    job = shipped("jobs/wheel-on-spindle.yaml")
+    count = 60
+    for places, said_so in ((20, True), (2 * count, False)):
+        found = read_back(job, written(tmp_path, e=0.003, count=places), instrument=ONE)
+        assert isinstance(found.against, Against)
+        assert found.against.of == count
+        assert ("within its pitch, planned at most" in said(found)) == said_so
+    figure = found.against.answers[0].plan.figure
+    assert isinstance(figure, AsItRuns)
+    whole = found.against.answers[0].plan.combined.worst.high
+    ring = figure.ring.base() + sum(one.up for one in figure.ring.pushes())
+    assert 0.0 < figure.within_a_pitch() == pytest.approx(whole - ring, rel=1e-6)
+
+
+@pytest.mark.parametrize(
+    ("path", "whose"),
+    [
+        ("setups.30.cut.holes.each.tangential", "op 30, cutting"),
+        ("setups.30.cut.holes.spindle_to_axis.x", "op 30, cutting"),
+        ("setups.30.divide.wheel.once_per_turn", "op 30, dividing"),
+        ("setups.30.hold.centre.runout", "op 30, holding"),
+    ],
+)
+def test_a_reamer_that_wanders_is_no_fault_of_the_holding(path: str, whose: str) -> None:
+    assert owner(Cause("any", "length", 30, high=0.001, paths=(path,))) == whose

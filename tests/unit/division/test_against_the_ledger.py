@@ -97,3 +97,15 @@ def test_forward_along_numbered_teeth_is_the_way_their_numbers_grow(turn: int, h
         assert test.flanks is not None
         a, b, c, d = test.flanks.vector  # forward less reverse is 2 tan(alpha) (-b, a), as on places that grow
         assert [c, d] == pytest.approx([-2.0 * math.tan(ALPHA) * b, 2.0 * math.tan(ALPHA) * a], abs=0.2 * ARCSEC)
+
+
+def test_a_station_a_turn_back_is_the_same_station(tmp_path: Path) -> None:
+    """-400 gon comes to a hair below a full turn in doubles; its reading goes into the mean of station 0."""
+    lines = ["angle_gon,deviation_arcsec"]
+    for turn, zero in ((-400, 4.0), (0, -4.0)):
+        lines += [f"{turn + 25 * k},{zero if k == 0 else (-1.0) ** k:.1f}" for k in range(16)]
+    file = tmp_path / "test.csv"
+    file.write_text("\n".join(lines))
+    found = reduce(read_test(file), count=16, radius=54.0, pressure_angle=ALPHA)
+    assert found.stations == 16
+    assert found.range / ARCSEC == pytest.approx(2.0, abs=0.6)
