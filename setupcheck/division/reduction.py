@@ -247,7 +247,8 @@ def _waves(found: _Found, names: dict[float, str], turned: bool, reasons: Sequen
         nu = found.nu if sure else 1.0
         because = reasons[0] if reasons else ""
         if term.harmonic in rival:
-            because = because or f"these stations cannot tell it from {rival[term.harmonic]}"
+            it = "once per turn" if term.harmonic == 1.0 else "it"  # told above the waves, too
+            because = because or f"these stations cannot tell {it} from {rival[term.harmonic]}"
         length = length_of(vector, covariance, nu, also=also)
         if not sure:
             length = Length(length.value, 0.0, math.inf, length.direction, None)

@@ -154,7 +154,9 @@ def parallax_advice(floor: Floor, setup: Setup, single_error: float) -> str | No
     least = math.floor(divide.target * math.sin(single_error) * 1e4) / 1e4
     nearer = f"bring the instrument within {floor.size(least)} of the axis (centring)" if least > 0.0 else ""
     far = ways.target_for(divide.centring, single_error)
-    farther = f"take a target {math.ceil(far / 100.0) / 10.0:g} m away" if far <= LONGEST_SIGHT else ""
+    inches = floor.loaded.job.units == "in"
+    distance = f"{math.ceil(far / 25.4)} in" if inches else f"{math.ceil(far / 100.0) / 10.0:g} m"
+    farther = f"take a target {distance} away" if far <= LONGEST_SIGHT else ""
     said = ", or ".join(part for part in (nearer, farther) if part)
     if not said:
         return None

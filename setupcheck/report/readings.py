@@ -199,7 +199,9 @@ def _flagged(found: ReadBack) -> Iterator[str]:
         where = f"at {_deg(w.theta)}" if w.rows == 1 else f"from {_deg(w.theta)} to {_deg(w.theta_last)}"
         size = f"{abs(w.pitches)} x {fixed(math.degrees(w.pitch), 4)} deg"
         sense = "further" if w.pitches > 0 else "short"
-        yield from wrap(f"{rows}, {where}: {size} {sense}, a place was counted wrong", first="  ", rest="      ")
+        half = found.reduced.collimation is not None and abs(abs(w.pitches) * w.pitch - math.pi) < 1e-9
+        why = "half a turn: its face may be named wrong" if half else "a place was counted wrong"
+        yield from wrap(f"{rows}, {where}: {size} {sense}, {why}", first="  ", rest="      ")
     for flag in r.flags[:FLAGS_SHOWN]:
         yield from wrap(
             f"line {flag.line}, station {_deg(flag.theta)}: {_sec(flag.off)} off the fit", first="  ", rest="      "

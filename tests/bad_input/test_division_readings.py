@@ -221,3 +221,9 @@ def test_a_worm_of_two_starts_on_an_odd_wheel_comes_round_in_two_turns(tmp_path:
     assert found.worm is not None
     assert 3.0 == pytest.approx(math.degrees(found.worm.length.value) * 3600.0, abs=0.15)
     assert 121 == found.stations
+
+
+def test_a_wave_that_is_open_is_named_where_it_stands_alone(tmp_path: Path) -> None:
+    reasons = reduced(tmp_path, circle(5)).reasons
+    assert any("cannot tell once per turn from " in why for why in reasons)
+    assert not any("tell it" in why for why in reasons)

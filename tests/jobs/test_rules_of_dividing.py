@@ -40,6 +40,10 @@ def test_a_near_target_is_told_how_far_away_it_should_be() -> None:
     assert "a target 103.2 m away" in remedy
     far = near.replace("10 m", "103.2 m")
     assert said(far, 12, "DIVIDE-010")[0] == "pass"
+    (inches,) = findings(disc(near, 12).replace("units: mm", "units: in"), "DIVIDE-010")
+    assert "a target 4061 in away" in (inches.remedy or "")
+    (inches,) = findings(disc(near.replace("10 m", "4063 in"), 12).replace("units: mm", "units: in"), "DIVIDE-010")
+    assert inches.verdict == "pass"
     assert said(near.replace("1 mm", "0.0969 mm"), 12, "DIVIDE-010")[0] == "pass"  # as the remedy says
     assert "within 0.097 mm" in remedy or "within 0.096 mm" in remedy
 
