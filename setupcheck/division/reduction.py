@@ -36,6 +36,8 @@ DISCONNECTED = (
 
 
 NO_SCATTER = "the readings leave no scatter at all, as those of no instrument do: copied, or rounded too coarsely"
+NOTHING = 1e-5 * ARCSEC
+"""Scatter of a reading below which it is none but the rounding of a sum [rad]. Our choice."""
 NO_SPARE = "there are no more readings than unknowns, so nothing says how well they hold: read more, or repeat"
 
 
@@ -208,7 +210,8 @@ def _reasons(ready: Prepared, found: _Found, steps: Sequence[doubts.Step]) -> tu
         else:
             where = math.degrees(step.theta) % 360.0
             said.append(f"from the station at {where:.2f} deg on round the circle everything stands {size} off")
-    if not found.scatter.used > 0.0 or found.scatter.nu < 1:
+    least = NOTHING + 1e-9 * float(np.abs(found.points.y).max(initial=0.0))
+    if not found.scatter.used > least * least or found.scatter.nu < 1:
         said.append(NO_SCATTER if found.fit.nu >= 1 else NO_SPARE)
     if not found.plan.repeated and not found.plan.arc:
         said.append(DISCONNECTED)

@@ -78,6 +78,9 @@ def _answers(found: ReadBack) -> Iterator[str]:
         "AS READ, not an answer while it is open; intervals of 95 % hold only if what is open does no harm"
         if open_ else "ANSWERS, with intervals of 95 %"
     )  # fmt: skip
+    yield from wrap(
+        "angles are places on the work, counter-clockwise from its mark, seen from its +z side", first="  ", rest="  "
+    )
     if r.repaired:
         yield from wrap("with the whole pitches taken off", first="  - ", rest="    ")
     e = r.eccentric

@@ -227,3 +227,12 @@ def test_a_wave_that_is_open_is_named_where_it_stands_alone(tmp_path: Path) -> N
     reasons = reduced(tmp_path, circle(5)).reasons
     assert any("cannot tell once per turn from " in why for why in reasons)
     assert not any("tell it" in why for why in reasons)
+
+
+def test_the_same_number_at_every_station_is_no_test(tmp_path: Path) -> None:
+    file = tmp_path / "same.csv"
+    stations = [*range(0, 360, 30), 0]
+    file.write_text("angle_deg,deviation_arcsec\n" + "\n".join(f"{a},1000000" for a in stations) + "\n")
+    found = reduce(read_test(file), count=72, radius=54.0, pressure_angle=0.35)
+    assert found.verdict == "open"
+    assert any("no scatter at all" in why for why in found.reasons)
