@@ -112,8 +112,17 @@ def _target(given: object, info: ValidationInfo) -> float:
     return value
 
 
+Step = Annotated[float, Read(_step)]
+"""Step of a readout: an angle [rad], for coordinates a length [mm]."""
+Target = Annotated[float, Read(_target)]
+"""Distance of a target [mm]; the unit must be written."""
+
+
 class Waves(Shop):
-    """Systematic division errors, each an amplitude ±."""
+    """Systematic division errors, each an amplitude ±.
+
+    once_per_turn, twice_per_turn  of the wheel or circle [rad];  once_per_crank  of the worm, every turn of it [rad]
+    """
 
     once_per_turn: AngleBound | None = None
     twice_per_turn: AngleBound | None = None
@@ -123,14 +132,17 @@ class Waves(Shop):
 class Divide(Shop):
     """How the circle is divided, and what each way costs. Amplitudes and bounds are ±.
 
+    by            the way;  circle  holes of the hole circle that is used
     wheel, worm   of a head or table; `wheel` also of a divided circle, plate or scale. A circle read on two opposite sides
                   (`faces: two`) has no once per turn
     setting       of one setting or reading;  clamp  shift when clamping;  drift  grows from the first cut to the last
     order         of cutting: `in-turn` or `spread`, halves of halves;  step  of a readout: an angle, with x-y a length
-    positions     notches, holes or face-teeth;  sides  of a polygon; `_error` of each of them, ± (half of any-to-any)
+    positions     notches, holes or face-teeth;  sides  of a polygon
+    positions_error, sides_error  of each of them, ± (half of any-to-any)
     sighting      of the autocollimator or telescope, each time;  polygon_tilt  of the polygon's axis to the table's
-    centring      of a theodolite over the table's axis, with its `target` so far away
-    plumb         tilt of its upright axis to the table's axis, with `elevation` of the sight, as collimation and trunnion
+    centring      of a theodolite over the table's axis [mm];  target  its distance [mm]
+    plumb         tilt of its upright axis to the table's axis;  elevation  of the sight above level
+    collimation   of its telescope, out of square;  trunnion  tilt of the axis the telescope tips about
     faces         `one` throughout, `two` averaged, or `mixed`: now one, now the other
     sine_bar      length between its rolls;  blocks  error of one stack;  quarters  of each quarter turn it starts from
     x, y          of a coordinate, each ±, along the axes that the drawing counts its angles from
@@ -142,7 +154,7 @@ class Divide(Shop):
     worm: Waves | None = None
     setting: AngleBound | None = None
     clamp: AngleBound | None = None
-    step: Annotated[float, Read(_step)] | None = None
+    step: Step | None = None
     drift: AngleBound | None = None
     order: Literal["in-turn", "spread"] | None = None
     positions: Whole | None = Field(default=None, ge=2, le=100_000)
@@ -152,7 +164,7 @@ class Divide(Shop):
     sighting: AngleBound | None = None
     polygon_tilt: AngleBound | None = None
     centring: Bound | None = None
-    target: Annotated[float, Read(_target)] | None = None
+    target: Target | None = None
     plumb: AngleBound | None = None
     elevation: Angle | None = None
     collimation: AngleBound | None = None

@@ -32,6 +32,10 @@ def _place(given: object, info: ValidationInfo) -> float | str:
     return value
 
 
+Spotted = Annotated[float | str, Read(_place, words=WORDS)]
+"""Distance from the middle of the face [mm], or one of WORDS."""
+
+
 class Spot(Shop):
     """The mark on one flank.
 
@@ -39,7 +43,7 @@ class Spot(Shop):
     towards  the face of the wheel that it lies nearer to;  height  where on the tooth;  share  of the flank that is marked
     """
 
-    at: Annotated[float | str, Read(_place, words=WORDS)]
+    at: Spotted
     towards: str | None = None
     height: Literal["tip", "middle", "root"] | None = None
     share: Fraction | None = Field(default=None, ge=0.0, le=1.0)
@@ -49,6 +53,7 @@ class Mark(Shop):
     """What marking blue showed on the finished wheel, worm turned by hand under light load.
 
     seen_from  the face one looks at to call the walls of an upright gap right and left
+    right, left  the mark on that wall, left away where it shows none
     on_teeth   `some`: in places round the wheel only;  film  thickness of the blue [mm]
     """
 

@@ -1,7 +1,8 @@
-"""The job models: parts, machines, cutters, place, requirements. Sizes mm, angles rad, degC, N, s.
+"""The job models: parts, machines, cutters, place. Sizes mm, angles rad, degC, N, s.
 
-Models that describe a setup stand in `setups.py`, the heat of a joint in `heating.py`, worm and mesh in `worm.py`, how an insert
-is ground in `grinding.py`, its measured profile in `insert_profile.py`. All are frozen and refuse unknown keys.
+Models that describe a setup stand in `setups.py`, what is asked in `asked.py`, the heat of a joint in `heating.py`, worm and
+mesh in `worm.py`, how an insert is ground in `grinding.py`, its measured profile in `insert_profile.py`. All are frozen and
+refuse unknown keys. Their docstrings list every key: `setupcheck schema` takes its descriptions from there.
 """
 
 # Annotations are evaluated as they stand (no __future__ import): pydantic would have to compile each of them from its text.
@@ -9,7 +10,6 @@ from typing import Annotated, Literal, Self
 
 from pydantic import (
     AfterValidator,
-    BeforeValidator,
     Field,
     ValidationInfo,
     model_validator,
@@ -26,8 +26,6 @@ from setupcheck.jobfile.types import (
     Division,
     Force,
     Length,
-    Limit,
-    Limits,
     Read,
     Reading,
     Roughness,
@@ -44,7 +42,9 @@ from setupcheck.jobfile.types import (
 class Dimension(Shop):
     """A size with its limits or its measured value: `32 H6`, `32.041 ±0.003`, `{measured: 2.31 mm, uncertainty: 4 um}`.
 
-    lower, upper    deviations from `nominal` [mm]; `uncertainty` is expanded, k = 2
+    nominal         as drawn [mm];  fit  of ISO 286, as in H6
+    lower, upper    deviations from `nominal` [mm]
+    measured        as found [mm];  uncertainty  of it, expanded, k = 2 [mm]
     at_temperature  of the part as it was measured, the gauge at 20 degC [degC]; the size is then brought back to 20 degC
     """
 
@@ -94,7 +94,7 @@ class Deviation(Shop):
     """An error entry that holds plan and measurement together.
 
     at_most      planned bound [mm]; a plain value means this one
-    measured     as found [mm]; `uncertainty` is expanded (k = 2), `standard_uncertainty` is the other key
+    measured     as found [mm];  uncertainty  of it, expanded, k = 2 [mm];  standard_uncertainty  instead, k = 1 [mm]
     high_at      where the metal comes nearest the probe: `tooth 14`, `90 deg`, `mark`, `jaw 2`, a surface's name
     device       what held or measured it; alone it takes its typical value
     mark         `kept`: the part goes back the same way round in the same device, so it is one cause in several setups
@@ -166,7 +166,12 @@ Facing = Annotated[Literal[1, -1], Read(_end, words=("+z", "-z"))]
 
 
 class Round(Shop):
-    """A surface of revolution with a length: cylinder, bore, taper, thread."""
+    """A surface of revolution with a length: cylinder, bore, taper, thread.
+
+    kind       what it is;  made  `stock`: the blank brings it;  roughness  with its figure, as in Rz 6.3 um
+    diameter   with its limits or as measured [mm];  hole  through its middle, where it is hollow [mm]
+    from, to   its two ends along the part [mm];  pitch  of a thread [mm]
+    """
 
     kind: Literal["cylinder", "bore", "taper", "thread"]
     diameter: Diameter
@@ -189,7 +194,12 @@ class Round(Shop):
 
 
 class Flat(Shop):
-    """A face square to the axis, or a centre hole in an end."""
+    """A face square to the axis, or a centre hole in an end.
+
+    kind      what it is;  made  `stock`: the blank brings it;  roughness  with its figure, as in Rz 6.3 um
+    at        where it stands along the part [mm];  facing  the end of the part that it looks to
+    diameter  its outer circle [mm];  hole  its inner one [mm]
+    """
 
     kind: Literal["face", "centre"]
     at: Length
@@ -201,7 +211,11 @@ class Flat(Shop):
 
 
 class Throat(Shop):
-    """The hollow of a worm wheel's rim: `diameter` at the mid-plane `at`, hollow `radius`."""
+    """The hollow of a worm wheel's rim.
+
+    kind      what it is;  made  `stock`: the blank brings it
+    diameter  of the wheel at the mid-plane [mm];  radius  of the hollow [mm];  at  where the mid-plane stands [mm]
+    """
 
     kind: Literal["throat"]
     diameter: Size
@@ -211,7 +225,12 @@ class Throat(Shop):
 
 
 class Toothing(Shop):
-    """A ring of teeth or gaps: `on_circle` is the pitch circle, `at` the mid-plane."""
+    """A ring of teeth or gaps.
+
+    kind   what it is;  made  `stock`: the blank brings it;  count  of the teeth
+    at     where the mid-plane stands along the part [mm];  width  of the face, half on either side [mm]
+    on_circle  diameter of the pitch circle [mm];  module  [mm];  pressure_angle  of the flanks [rad]
+    """
 
     kind: Literal["teeth"]
     count: Whole = Field(ge=1, le=1000)
@@ -224,7 +243,12 @@ class Toothing(Shop):
 
 
 class Pattern(Shop):
-    """Holes on a circle, or a single slot or keyway: `on_circle` 2 x its distance from the axis, first place at `angle`."""
+    """Holes on a circle, or a single slot or keyway.
+
+    kind       what it is;  made  `stock`: the blank brings it;  count  of the places, evenly divided
+    on_circle  diameter of their circle, 2 x the distance from the axis [mm];  angle  of the first place [rad]
+    at         where it stands along the part [mm];  diameter  of a hole [mm];  width  of a slot [mm]
+    """
 
     kind: Literal["holes", "slot"]
     count: Whole = Field(default=1, ge=1, le=1000)
@@ -240,7 +264,13 @@ Surface = Annotated[Round | Flat | Throat | Toothing | Pattern, Field(discrimina
 
 
 class Relation(Shop):
-    """What is known of a bought or inspected part: `of` about or from another of its surfaces."""
+    """What is known of a bought or inspected part: one surface about or from another.
+
+    of       the surface that is spoken of
+    about    the surface whose axis it turns about;  from  instead, the face it is counted from
+    runout   full indicator movement about that axis [mm];  face_runout  of a face, read on the circle `across` [mm]
+    across   diameter of the circle that was read on [mm];  length  distance from the face [mm]
+    """
 
     of: str
     about: str | None = None
@@ -266,7 +296,11 @@ class Relation(Shop):
 
 
 class Part(Shop):
-    """One part: its material, its surfaces by name, and the relations that no setup here makes (`given`)."""
+    """One part.
+
+    material  by its name, as in C45;  properties  of the certificate, in place of the list's
+    surfaces  all of them, each by its name;  given  relations that no setup here makes, as of a bought part
+    """
 
     material: str | None = None
     properties: Properties | None = None
@@ -278,9 +312,14 @@ class Part(Shop):
 
 
 class Cutter(Shop):
-    """A cutter. `width` of an insert, at the height `width_at` above its tip; at pitch height where none is said.
+    """A cutter.
 
-    `profile` of the insert as measured after grinding; `turned`: what it may be turned in its face as it sits in the bar.
+    kind        what it is;  diameter  of it [mm];  speed  it turns at [rev/min];  overhang  of its bar [mm]
+    tip_radius  from its axis to its tip [mm];  bar_diameter  of the bar that carries it [mm]
+    insert      what its flanks are: the `envelope`, or the section in the `mid-plane`
+    width       of the insert [mm];  width_at  height above the tip of that, else pitch height [mm]
+    grinding    how the insert is ground;  profile  of it as measured after grinding
+    turned      what it may be turned in its face as it sits in the bar, ± [rad]
     """
 
     kind: Literal["single-point", "hob", "form-cutter", "drill", "reamer", "boring-head", "grinding-wheel", "broach"]
@@ -298,7 +337,13 @@ class Cutter(Shop):
 
 
 class Machine(Shop):
-    """A machine. `axis_runout`: full indicator movement of its own axis, an error of each cut; `rating`: force of a press."""
+    """A machine.
+
+    kind         what it is;  axis  how it lies;  rating  force of a press [N]
+    axis_runout  full indicator movement of its own axis, an error of each cut [mm]
+    worm_ratio   turns of the worm for one of the work;  hole_circles  there are, by their count of holes
+    nose_points  where the nose of its spindle looks;  cutter_stands  where the cutter is
+    """
 
     kind: Literal["lathe", "dividing-head", "rotary-table", "mill", "grinder", "drill-press", "jig-borer", "press"]
     worm_ratio: Whole | None = Field(default=None, ge=1, le=1000)
@@ -311,86 +356,20 @@ class Machine(Shop):
 
 
 class Distance(Shop):
-    """A length from a face: `{from: spindle.shoulder, length: 13.500 ±0.020}`."""
+    """A length from a face: `{from: spindle.shoulder, length: 13.500 ±0.020}`.
+
+    from  the face;  length  from it outward, the way it looks [mm]
+    """
 
     from_: str = Field(alias="from")
     length: Dim
 
 
 class Place(Shop):
-    """Where the finished part works: the axis it turns about, and how far the worm's axis stands from a face."""
+    """Where the finished part works.
+
+    axis  the surface it turns about;  worm_axis  how far the worm's axis stands from a face
+    """
 
     axis: str | None = None
     worm_axis: Distance | None = None
-
-
-# -- what is asked ---------------------------------------------------------------------------------------------------
-
-What = Literal[
-    "run-out",
-    "face-run-out",
-    "coaxial",
-    "cumulative-pitch",
-    "single-pitch",
-    "gap-centre-pitch",
-    "index-range",
-    "index-within",
-    "on-workpiece",
-    "position",
-    "chord",
-    "pitch-circle",
-    "mid-plane",
-    "backlash",
-    "backlash-swing",
-    "contact-length",
-    "contact-area",
-    "length",
-    "squareness",
-    "torque",
-    "allowance",
-]
-
-
-class Require(Shop):
-    """One required figure. `what` is a closed list; `grade` takes the limit from ISO 1328-1:1995 for cylindrical gears."""
-
-    what: What
-    of: Annotated[str, BeforeValidator(lambda given: str(given) if type(given) is int else given)] | None = None
-    about: str | None = None
-    at_most: Limit | None = None
-    at_least: Limit | None = None
-    between: Limits | None = None
-    grade: Whole | None = Field(default=None, ge=0, le=12)
-    along: str | None = None
-    across: Size | None = None
-    at: Length | None = None
-    on_diameter: Size | None = None
-    clock: str | None = None
-    film: Bound | None = None
-    name: str | None = None
-
-    @model_validator(mode="after")
-    def it_has_one_limit(self) -> Self:
-        stated: list[object] = [x for x in (self.between, self.grade) if x is not None]
-        stated += [self.at_most] if self.at_most is not None or self.at_least is not None else []
-        if len(stated) != 1:
-            raise ValueError("a requirement has one limit. Write at_most, at_least, between: [low, high], or grade")
-        return self
-
-
-class Waive(Shop):
-    """A finding the planner accepts, with the reason and the day it ends."""
-
-    rule: str
-    at: str
-    reason: str = Field(min_length=3)
-    until: str | None = None
-
-
-class Checked(Shop):
-    """A stop-and-check caution that somebody has answered."""
-
-    caution: str
-    op: Whole
-    by: str = Field(min_length=1)
-    note: str | None = None

@@ -10,8 +10,9 @@ class Properties(Shop):
     """What the certificate says of a part's material, in place of the list, or for a material that is not in it.
 
     modulus, poisson       elastic constants [MPa, -];  expansion  mean from 20 degC [1/K]
-    yield_strength         R_e or R_p0.2 [MPa];  tensile_strength  R_m [MPa], which judges a `brittle` material
-    density, specific_heat [kg/m3, J/kgK];  conductivity  of heat [W/mK]
+    yield_strength         R_e or R_p0.2 [MPa];  tensile_strength  R_m [MPa], which judges a brittle material
+    brittle                it breaks before it yields
+    density, specific_heat  [kg/m3], [J/kgK];  conductivity  of heat [W/mK]
     heat_cap, last_temper  highest temperature of one heating; temperature of the last temper [degC]
     porous                 pressed and sintered from powder: it has pores, which give way
     """

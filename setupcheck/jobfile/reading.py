@@ -30,9 +30,10 @@ from setupcheck.jobfile import (
     shapes,
     warmth,
 )
+from setupcheck.jobfile.asked import Require
 from setupcheck.jobfile.drawing import drawing_of
 from setupcheck.jobfile.examples import ENTRIES, SHAPES, TO_BEGIN
-from setupcheck.jobfile.models import Require, Surface
+from setupcheck.jobfile.models import Surface
 from setupcheck.jobfile.setups import Job
 from setupcheck.jobfile.types import Read
 from setupcheck.notation import Units, nearest, plain, quoted

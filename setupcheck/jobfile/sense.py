@@ -9,7 +9,8 @@ from __future__ import annotations
 import math
 from collections.abc import Callable, Iterator, Mapping
 
-from setupcheck.jobfile.models import Flat, Pattern, Require, Round, Surface, Throat, Toothing
+from setupcheck.jobfile.asked import Require
+from setupcheck.jobfile.models import Flat, Pattern, Round, Surface, Throat, Toothing
 from setupcheck.jobfile.names import Miss, Ref, Uses, find_surface
 from setupcheck.jobfile.types import size_shown
 from setupcheck.record import record

@@ -5,10 +5,10 @@ from typing import Annotated, Literal, Self
 
 from pydantic import BeforeValidator, Field, ValidationInfo, model_validator
 
+from setupcheck.jobfile.asked import Checked, Require, Waive
 from setupcheck.jobfile.dividing import Divide
 from setupcheck.jobfile.heating import Heat
 from setupcheck.jobfile.models import (
-    Checked,
     Cutter,
     Dim,
     Error,
@@ -16,9 +16,7 @@ from setupcheck.jobfile.models import (
     Machine,
     Part,
     Place,
-    Require,
     RunOut,
-    Waive,
 )
 from setupcheck.jobfile.prove_out import ProveOut
 from setupcheck.jobfile.service import JointService
@@ -67,7 +65,10 @@ _JAWS = ("three-jaw", "four-jaw", "soft-jaws", "shimmed-jaws")
 
 
 class Through(Shop):
-    """One device that stands on another, with its own error: `through: [{by: centres, runout: 4 um}]`, or `[centres]`."""
+    """One device that stands on another, with its own error: `through: [{by: centres, runout: 4 um}]`, or `[centres]`.
+
+    by  the device;  runout  full indicator movement of its own [mm]
+    """
 
     by: str
     runout: RunOut | None = None
@@ -79,7 +80,10 @@ class Through(Shop):
 
 
 class Span(Shop):
-    """A stretch along the part."""
+    """A stretch along the part.
+
+    from, to  its two ends [mm]
+    """
 
     low: Length = Field(alias="from")
     high: Length = Field(alias="to")
@@ -93,13 +97,14 @@ class Span(Shop):
 
 
 class Centre(Shop):
-    """The axis brought onto the machine axis: `on` a surface, at height `at`, with its error.
+    """The axis brought onto the machine axis, with its error.
 
+    on         the surface that is held or trued;  by  the device;  at  height along the part [mm]
     runout     full indicator movement of the datum as trued, or of the mandrel, spigot or collet that carries it
-    clearance  diametral play between datum and device; `rests` says how the part lies in it
+    clearance  diametral play between datum and device;  rests  how the part lies in it
     x, y       readings of an edge finder or indicator along two machine axes, each ±
     grip       stretch of the surface that the jaws or the mandrel hold;  grip_force  of each jaw on the part [N]
-    turned     where the part's mark stands from the device's mark
+    turned     where the part's mark stands from the device's mark;  through  devices that this one stands on
     """
 
     on: str
@@ -127,7 +132,11 @@ class Centre(Shop):
 
 
 class Square(Shop):
-    """The face that rules the lean; `across` is the circle the indicator ran on."""
+    """The face that rules the lean.
+
+    on           the face;  by  what it lies against, or is read with;  across  the circle the indicator ran on [mm]
+    face_runout  full indicator movement on that circle [mm];  chip  under one side, as thick as it may be [mm]
+    """
 
     on: str
     by: str | None = None
@@ -145,16 +154,22 @@ class Square(Shop):
 
 
 class Spacer(Shop):
-    """A shim or spacer between a stop and its face."""
+    """A shim or spacer between a stop and its face.
+
+    name  of it;  length  its thickness [mm]
+    """
 
     name: str
     length: Dim
 
 
 class Stop(Shop):
-    """What rules the length: `on` a face, with its error. In a join `against` is the face of the other part.
+    """What rules the length.
 
-    touches  `all-round` (a plate or shoulder) or `point` (a single stop, at radius `radius` and direction `direction`)
+    on        the face that meets the stop;  against  in a join, the face of the other part
+    error     of the stop; measured, it is positive where it stands nearer the tool [mm];  spacers  between both
+    touches   `all-round` (a plate or shoulder) or `point`, a single stop
+    radius    where that one stands [mm];  direction  of it [rad]
     """
 
     on: str
@@ -167,7 +182,10 @@ class Stop(Shop):
 
 
 class Clock(Shop):
-    """What rules the angle about the axis: `on` a keyway, tooth gap or hole, with the error of touching it."""
+    """What rules the angle about the axis.
+
+    on  a keyway, ring of teeth or holes;  number  of the gap or hole, from 1;  error  of touching it [mm]
+    """
 
     on: str
     number: Whole = Field(default=1, ge=1)
@@ -175,6 +193,12 @@ class Clock(Shop):
 
 
 class Hold(Shop):
+    """How the part is held: its axis, its lean (exactly one of `square` and `and_centre`), its length and its angle.
+
+    centre  what rules the axis;  and_centre  a second plane along it;  square  a face that rules the lean
+    stop    what rules the length;  clock  what rules the angle about the axis
+    """
+
     centre: Centre | None = None
     and_centre: Centre | None = None
     square: Square | None = None
@@ -196,7 +220,11 @@ class Hold(Shop):
 
 
 class MidPlane(Shop):
-    """How the cutter is brought to the mid-plane of the teeth."""
+    """How the cutter is brought to the mid-plane of the teeth.
+
+    found  when: with the head tilted, before it was, or where it is not tilted;  error  of finding it [mm]
+    pivot  distance of the mid-plane from the pivot that the head tilts about [mm]
+    """
 
     found: Literal["after-tilt", "before-tilt", "no-tilt"]
     error: Error | None = None
@@ -204,7 +232,12 @@ class MidPlane(Shop):
 
 
 class Head(Shop):
-    """The tilt of a dividing head or table, set for the cut."""
+    """The tilt of a dividing head or table, set for the cut.
+
+    tilt      without a sign [rad];  leans  where the nose goes;  uncertainty  of the setting, ± [rad]
+    by        what it is set with;  sine_bar  length between its rolls [mm];  blocks  under it [mm]
+    mid_plane  how the cutter is brought there
+    """
 
     tilt: Tilt
     uncertainty: AngleBound | None = None
@@ -216,7 +249,10 @@ class Head(Shop):
 
 
 class Scatter(Shop):
-    """What each hole or tooth adds for itself, ±."""
+    """What each hole or tooth adds for itself, ±.
+
+    radial, tangential  from and round the axis [mm];  by  the tool that wanders
+    """
 
     radial: Bound | None = None
     tangential: Bound | None = None
@@ -226,7 +262,8 @@ class Scatter(Shop):
 class Touched(Shop):
     """The surface the depth is counted from, its diameter as measured or how far it may be off, and how it is touched.
 
-    at_most  how far its diameter may be from the drawing, either way; `uncertainty` of `measured` is expanded, k = 2
+    surface  the one that is touched;  measured  its diameter [mm];  uncertainty  of that, expanded, k = 2 [mm]
+    at_most  how far its diameter may be from the drawing, either way [mm]
     tool     `standing` (tip in the mid-plane) or `turning` (a turning cutter meets the corners of a throat first)
     """
 
@@ -237,9 +274,14 @@ class Touched(Shop):
     tool: Literal["standing", "turning"] | None = None
 
 
+DepthFrom = Annotated[Touched, BeforeValidator(lambda g: {"surface": g} if isinstance(g, str) else g)]
+"""A surface's name alone, or what is known of its diameter beside it."""
+
+
 class Cut(Shop):
     """One surface cut in a setup. An empty map finishes it to its drawing size.
 
+    state              `rough` or `finish`, where no size says it
     to                 diameter, or position of a face, that this operation leaves
     leave_on_diameter, leave_on_radius, leave   stock left for a later operation
     error              error of the length or position of this cut (dial, stop, readout)
@@ -247,6 +289,12 @@ class Cut(Shop):
     removes            surfaces that are gone afterwards
     from_surface       the surface it is cut out of, where it has no earlier state of its own
     prove_out          shallow gaps cut first, and what the dial over a ball read in them
+    finishing_cut      thinnest cut that the tool still takes, on the radius [mm]
+    form               error of the old surface's form, on the radius [mm]
+    each               what each hole or tooth adds for itself
+    cutter             one of `cutters`;  tool_change_after  so many gaps of all passes
+    depth              of a gap [mm];  depth_error  of it [mm];  depth_from  the surface it is counted from
+    passes             depths that are cut one after the other, together the whole depth [mm]
     """
 
     to: Length | None = None
@@ -262,7 +310,7 @@ class Cut(Shop):
     cutter: str | None = None
     depth: Size | None = None
     depth_error: Error | None = None
-    depth_from: Annotated[Touched, BeforeValidator(lambda g: {"surface": g} if isinstance(g, str) else g)] | None = None
+    depth_from: DepthFrom | None = None
     passes: tuple[Size, ...] = ()
     prove_out: ProveOut | None = None
     each: Scatter | None = None
@@ -271,7 +319,10 @@ class Cut(Shop):
 
 
 class MeasuredPair(Shop):
-    """A bore and a journal that lie on the bench, as measured, and what both readings may be out."""
+    """A bore and a journal that lie on the bench, as measured.
+
+    name  of the pair;  bore, journal  both diameters [mm];  uncertainty  what both readings may be out [mm]
+    """
 
     name: str
     bore: Size
@@ -282,6 +333,11 @@ class MeasuredPair(Shop):
 class Join(Shop):
     """Two parts put together: the machine axis of this step is the inner part's surface.
 
+    outer, inner  the bore and the journal, as in wheel.bore;  by  how they are joined;  stop  the two faces that meet
+    fit_error    full indicator movement of the outer part about the inner one [mm]
+    clearance    diametral play of a sliding fit [mm];  rests  how the outer part lies in it
+    heat         of a shrink fit, and its cold;  joint  how its surfaces are
+    must_carry   torque and force along the axis
     grips_first  where a shrunk hub bites first: `shoulder-end` (cooled or clamped so that no gap opens) or `anywhere`
     friction     of the joint, where the shop knows better than the table;  smoothing  share of both Rz that is lost
     serves_at    coldest and warmest in service;  lead_in  chamfer that leads a pressed part in, along the axis
@@ -312,7 +368,14 @@ class Join(Shop):
 
 
 class Setup(Shop):
-    """One numbered step: a holding with its cuts, or a joining."""
+    """One numbered step: a holding with its cuts, or a joining.
+
+    op     its number;  note  for people;  machine  one of `machines`, or its kind;  part  that is held
+    looks_at_tool  the end of the part that faces the tool
+    hold   how the part is held;  keeps  instead, the operation whose holding was never opened
+    head   its tilt;  divide  how the circle is divided;  cut  each surface that is cut, by its name
+    join   two parts put together
+    """
 
     op: Whole = Field(ge=1, le=100_000)
     note: str | None = None
@@ -348,7 +411,15 @@ class Setup(Shop):
 
 
 class Job(Shop):
-    """The whole job file. `done`: the last operation that is finished, as the job goes on."""
+    """The whole job file.
+
+    setupcheck  version of the job file, 1;  title  of the job;  job  its number;  revision  of it
+    units       of bare numbers;  room  its temperature [degC];  confidence  of `likely`, as in 95 %
+    parts       each by its name;  worm  of a drive;  mesh  worm and wheel where they work;  place  where the part works
+    cutters, machines  each by its name;  setups  the route, step by step
+    done        the last operation that is finished, as the job goes on
+    require     the figures asked for;  waive  findings that are accepted;  checked  cautions that are answered
+    """
 
     setupcheck: Version
     title: str = Field(min_length=1)

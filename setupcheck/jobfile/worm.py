@@ -62,13 +62,19 @@ Quotient = Annotated[float, Read(_quotient)]
 
 
 class Thickness(Dimension):
-    """Thickness of the worm's thread along its axis, at the reference diameter, or at the diameter `at` [mm]."""
+    """Thickness of the worm's thread along its axis [mm].
+
+    at  diameter where it is, where that is not the reference diameter [mm]
+    """
 
     at: Size | None = None
 
 
 class OverWires(Dimension):
-    """Size of the worm over three wires of the diameter `wire`: `{measured: 25.35, wire: 2.50, uncertainty: 3 um}` [mm]."""
+    """Size of the worm over three wires: `{measured: 25.35, wire: 2.50, uncertainty: 3 um}` [mm].
+
+    wire  diameter of one of them [mm]
+    """
 
     wire: Size
 
@@ -124,10 +130,17 @@ Budget = Annotated[float, Read(_budget)]
 
 
 class Worm(Shop):
-    """The worm. `pressure_angle` is that of its axial section; `lead` is its travel in one turn.
+    """The worm, by whatever is known of it.
 
+    starts           threads;  hand  of the thread;  lead  its travel in one turn [mm]
+    axial_module, normal_module  along its axis, or square to the thread [mm];  axial_pitch  from thread to thread [mm]
     diametral_pitch  threads in pi inches along the axis, 25.4 mm over the axial module [1/in]
     quotient         reference diameter over axial module
+    reference_diameter, tip_diameter  where the thread's thickness is counted, and over all [mm]
+    pressure_angle   that of its axial section [rad];  profile  of its flanks
+    thread_thickness  along its axis [mm];  over_wires  its size over three wires [mm]
+    material         by its name;  speed  [rev/min]
+    end_float        that its bearings leave along its axis [mm];  runout  where it runs, full indicator movement [mm]
     """
 
     starts: Whole | None = Field(default=None, ge=1, le=12)
@@ -151,8 +164,11 @@ class Worm(Shop):
 
 
 class Mesh(Shop):
-    """Worm and wheel where they work. `shift` is the wheel's profile shift factor, `serves_at` the drive's temperatures.
+    """Worm and wheel where they work.
 
+    wheel    the teeth, as in wheel.teeth;  shift  the wheel's profile shift factor
+    centre_distance  of both axes [mm];  shaft_angle_error  of the housing, ± [rad]
+    housing  its material;  serves_at  coldest and warmest temperature of the drive [degC]
     ball     diameter of the balls that the size of the finished wheel is planned for [mm]
     over_balls  that size as measured
     contact  `exact`: contact, transmission error and insert from the exact gap, which takes a second more

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from setupcheck.jobfile.models import Require
+from setupcheck.jobfile.asked import Require
 from setupcheck.jobfile.sense import limit_kind
 from setupcheck.quantities.shop import Floor
 from setupcheck.record import record

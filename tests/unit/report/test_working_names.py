@@ -8,7 +8,7 @@ import pytest
 
 from setupcheck.errors import SetupcheckError
 from setupcheck.flow import prepare
-from setupcheck.jobfile.models import What
+from setupcheck.jobfile.asked import What
 from setupcheck.report.formulas import FORMULAS
 from setupcheck.report.working import as_working
 from tests.unit.report.sample import GEAR, PLATE, WHEEL, changed, flat, line_of, loaded
