@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Iterator, Sequence
+from contextlib import contextmanager
 from dataclasses import replace
 
 from setupcheck.errors import JobError, Problem, SetupcheckError, printable
@@ -74,23 +75,31 @@ def changed(loaded: LoadedJob, changes: Sequence[Change]) -> LoadedJob:
         loc = _way(loaded, change)
         for other, first in ways:
             if loc[: len(other)] == other or other[: len(loc)] == loc:
-                how = "is set twice" if loc == other else f"stands together with {quoted(first.key)}, one inside the other"
+                how = (
+                    "is set twice"
+                    if loc == other
+                    else f"stands together with {quoted(first.key)}, one inside the other"
+                )
                 raise _refused(loaded, change, tree.place(loc), how, "Set it once")
         ways.append((loc, change))
     for loc, change in ways:
         tree = _put(tree, loc, _value(change))
-    try:
+    with from_set(changes):
         return replace(read_tree(tree, loaded.sha256), file=loaded.file)
+
+
+@contextmanager
+def from_set(changes: Sequence[Change]) -> Iterator[None]:
+    """Problems of a changed job say which --set they come from: the file itself has none."""
+    try:
+        yield
     except JobError as wrong:
-        raise from_set(wrong, changes) from None
-
-
-def from_set(wrong: JobError, changes: Sequence[Change]) -> JobError:
-    """The problems of a changed job, each saying which --set it comes from: the file itself has none."""
-    return JobError(wrong.file, wrong.lines, [_said(problem, changes) for problem in wrong.problems])
+        raise JobError(wrong.file, wrong.lines, [_said(problem, changes) for problem in wrong.problems]) from None
 
 
 def _said(problem: Problem, changes: Sequence[Change]) -> Problem:
+    if "--set " in problem.problem:
+        return problem
     mine = [c for c in changes if problem.path == c.key or problem.path.startswith((f"{c.key}.", f"{c.key}["))]
     mine = mine or [c for c in changes if c.key.rpartition(".")[0] == problem.path] or list(changes)
     return replace(problem, problem=f"with --set {' and '.join(c.told() for c in mine)}: {problem.problem}")
