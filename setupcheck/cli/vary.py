@@ -4,11 +4,16 @@
 
 import sys
 from pathlib import Path
-from typing import Annotated
+from typing import TYPE_CHECKING, Annotated
 
 import typer
 
 from setupcheck.cli.review import EXIT, day_of
+from setupcheck.cli.writing import refuse_place, write_whole
+from setupcheck.errors import printable
+
+if TYPE_CHECKING:
+    from setupcheck.flow import Varied
 
 
 def command(
@@ -23,6 +28,11 @@ def command(
         ),
     ],
     as_json: Annotated[bool, typer.Option("--json", help="Print JSON instead of text.")] = False,
+    svg: Annotated[
+        Path | None,
+        typer.Option("--svg", "-o", help="Of a range: draw the requirements into this file.", show_default=False),
+    ] = None,
+    force: Annotated[bool, typer.Option("--force", help="Replace a file that is already there.")] = False,
     everything: Annotated[bool, typer.Option("--all", help="Every number that moved.")] = False,
     house: Annotated[Path | None, typer.Option(help="File of your shop's own limits.", show_default=False)] = None,
     record: Annotated[
@@ -32,14 +42,47 @@ def command(
 ) -> None:
     """Judge a job as it stands and with entries changed, side by side. Exit as review, for the changed job.
 
+    One value may be a range, as in 2um..20um or 2um..20um/7: a table tells where the verdict turns; exit as its worst.
+
     Example: setupcheck vary jobs/rotator-worm-wheel.yaml --set 'setups.30.hold.centre.runout=60 um'
     """
-    from setupcheck.flow import vary
-    from setupcheck.jobfile.changing import read_change
-    from setupcheck.report.vary import as_json as in_json
-    from setupcheck.report.vary import as_text
+    from setupcheck.flow import review, vary
+    from setupcheck.jobfile.changing import Change, read_change
+    from setupcheck.jobfile.ranging import Range, read_range
 
     day = day_of(on) if on is not None else None
-    found = vary(job, [read_change(text) for text in changes], house=house, on=day, devices=record)
-    sys.stdout.write(in_json(found) if as_json else as_text(found, everything=everything))
-    raise typer.Exit(EXIT[found.after.verdict])
+    asked: list[Change | Range] = []
+    for text in changes:
+        change = read_change(text)
+        asked.append(read_range(change) or change)
+    spans = [one for one in asked if isinstance(one, Range)]
+    singles = [one for one in asked if isinstance(one, Change)]
+    if len(spans) > 1:
+        raise typer.BadParameter("write one range at a time, and one value for the others", param_hint="--set")
+    if svg is not None:
+        if not spans:
+            raise typer.BadParameter("a drawing needs a range, as in --set KEY=2um..20um", param_hint="--svg")
+        refuse_place(svg, force=force)
+    before = review(job, house=house, on=day, devices=record)
+
+    def again(these: list[Change]) -> "Varied":
+        return vary(before, these, house=house, on=day, devices=record)
+
+    if not spans:
+        from setupcheck.report.vary import as_json as in_json
+        from setupcheck.report.vary import as_text
+
+        found = again(singles)
+        sys.stdout.write(in_json(found) if as_json else as_text(found, everything=everything))
+        raise typer.Exit(EXIT[found.after.verdict])
+    from setupcheck.report import vary_range
+
+    swept = vary_range.sweep(before, spans[0], singles, again)
+    if svg is not None:
+        from setupcheck.report.vary_drawing import as_drawing
+
+        write_whole(svg, as_drawing(swept), force=force)
+    sys.stdout.write(vary_range.as_json(swept) if as_json else vary_range.as_text(swept))
+    if svg is not None and not as_json:
+        sys.stdout.write(f"\nwritten: {printable(str(svg))}\n")
+    raise typer.Exit(max(EXIT[one.after.verdict] for one in swept.found))

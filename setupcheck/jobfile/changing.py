@@ -185,7 +185,8 @@ def _within(data: Data, node: Node, loc: Loc, value: Data) -> tuple[Data, Node]:
         entries = list(data) if isinstance(data, list) else []
         nodes = list(node.inside) if isinstance(node.inside, list) else []
         old, there = (entries[step], nodes[step]) if step < len(entries) else (None, new_there)
-        entries[step : step + 1], nodes[step : step + 1] = ([one] for one in _within(old, there, rest, value))
+        put, stands = _within(old, there, rest, value)
+        entries[step : step + 1], nodes[step : step + 1] = [put], [stands]
         return entries, Node(node.place, node.key_place, nodes)
     keys = dict(data) if isinstance(data, dict) else {}
     inside = dict(node.inside) if isinstance(node.inside, dict) else {}
