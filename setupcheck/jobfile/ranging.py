@@ -54,7 +54,7 @@ def read_range(change: Change) -> Range | None:
 
     >>> found = read_range(Change("a", "2um..20um/7"))
     >>> [found.written(n) for n in found.numbers], found.written(found.step)
-    (['2um', '5um', '8um', '11um', '14um', '17um', '20um'], '0.1um')
+    (['2 um', '5 um', '8 um', '11 um', '14 um', '17 um', '20 um'], '0.1 um')
     """
     if ".." not in change.value or change.value[0] in "\"'[{":
         return None
@@ -75,7 +75,9 @@ def read_range(change: Change) -> Range | None:
     apart = (last - first) / (count - 1)
     grain = min(_ten_below(apart) * Decimal(10) ** (1 - FIGURES), _grain(first), _grain(last))
     inner = (_on(first + apart * i, grain) for i in range(1, count - 1))
-    return Range(change.key, sign, unit_too, (first, *inner, last), _ten_below(apart / PARTS))
+    word = unit_too.strip()
+    spaced = f" {word}" if word[:1].isalnum() or word[:1] == "%" else word
+    return Range(change.key, sign, spaced, (first, *inner, last), _ten_below(apart / PARTS))
 
 
 def _grain(number: Decimal) -> Decimal:

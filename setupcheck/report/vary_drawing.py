@@ -8,20 +8,22 @@ from decimal import Decimal
 
 from setupcheck.quantities.judged import Result
 from setupcheck.quantities.scopes import stack_of
-from setupcheck.report.svg import THICK, THIN, Point, line, picture, polyline, room, words
+from setupcheck.report.svg import THIN, Point, line, picture, polyline, room, words
 from setupcheck.report.text import limits_in_words
 from setupcheck.report.vary_range import Swept, moving
 from setupcheck.report.wording import clean, in_unit, title_of, unit_of
 
 WIDTH, HEIGHT = 210.0, 148.0
 """Sheet: A5 across [mm]. Source: ISO 216 (from memory)."""
-LEFT, RIGHT, TOP, BOTTOM = 22.0, 112.0, 26.0, 20.0
+LEFT, RIGHT, TOP, BOTTOM = 22.0, 112.0, 30.0, 16.0
 """Edges round the field of the curves [mm]; what each curve is stands to the right of it. Our choice."""
 MOST_CURVES = 8
 """Curves of one drawing, those that take most of their limits. Our choice: more cannot be told apart."""
 LINES = ("", "4 1.2", "1.2 1.2", "6 1.2 1.2 1.2", "2.5 2.5", "8 2", "4 1 1 1 1 1", "0.5 1.5")
 """Dashes of the curves [mm of paper], one kind for each. Our choice."""
 SMALL = 2.6
+CURVE, LIMIT_LINE = 0.35, 0.9
+"""Line widths [mm]: a curve, and the line of the limit, which no curve may be taken for. Our choice."""
 LONGEST = 62
 """Characters of a line of text to the right of the curves. Our choice, for its room."""
 CEILING = 3.0
@@ -46,7 +48,7 @@ def as_drawing(swept: Swept) -> str:
     job = swept.before.loaded.job
     title = _short(f"{clean(job.job)}: {clean(job.title)}" if job.job else clean(job.title), 90)
     parts = [words((8.0, 9.0), title, size=4.0, bold=True), words((8.0, 15.0), _short(_what(swept), 120))]
-    parts.append(words((8.0, 20.0), _verdict(swept), size=SMALL))
+    parts.append(words((8.0, 20.5), _verdict(swept), size=SMALL))
     parts += _grid(swept, put, floor, top)
     for number, (name, points) in enumerate(shown):
         parts += _curve(swept, name, [put(p) for p in points], number)
@@ -71,7 +73,7 @@ def _verdict(swept: Swept) -> str:
         f"{t.before} to {t.after} between {swept.range.written(t.low)} and {swept.range.written(t.high)}"
         for t in swept.turns
     ]
-    return _short(f"verdict turns from {', '.join(told)}", 130)
+    return _short(f"verdict turns (dotted) from {', '.join(told)}", 130)
 
 
 def _curves(swept: Swept) -> list[tuple[str, list[Point]]]:
@@ -103,10 +105,10 @@ def _grid(swept: Swept, put: Callable[[Point], Point], floor: float, top: float)
         parts.append(line((start[0] - 1.5, start[1]), start))
         parts.append(words((start[0] - 2.5, start[1] + 0.9), f"{y * 100:.0f} %", size=SMALL, anchor="end"))
         if abs(y - 1.0) < 1e-9:
-            parts.append(line(start, end, width=2 * THICK))
+            parts.append(line(start, end, width=LIMIT_LINE))
     parts.append(line(put((first, floor)), put((first, top))))
     parts.append(line(put((first, floor)), put((last, floor))))
-    parts.append(words((8.0, TOP - 1.5), "share of its limit, which is the thick line", size=SMALL))
+    parts.append(words((8.0, TOP - 2.5), "share of its own limit taken; thick line: the limit", size=SMALL))
     wide = max(room(swept.range.written(n), SMALL) for n in swept.range.numbers)
     fits = max(1, math.ceil((wide + 2.0) * (len(swept.range.numbers) - 1) / (WIDTH - LEFT - RIGHT)))
     for i, number in enumerate(swept.range.numbers):
@@ -117,7 +119,6 @@ def _grid(swept: Swept, put: Callable[[Point], Point], floor: float, top: float)
     for turn in swept.turns:
         x, y = put((_middle(turn.low, turn.high), floor))
         parts.append(line((x, y), (x, put((first, top))[1]), width=THIN, dashes="0.6 0.9"))
-        parts.append(words((x, TOP + 1.0), f"{turn.before}|{turn.after}", size=SMALL, anchor="middle"))
     return parts
 
 
@@ -128,7 +129,7 @@ def _middle(low: Decimal, high: Decimal) -> float:
 def _curve(swept: Swept, name: str, points: list[Point], number: int) -> list[str]:
     """The curve with its values, and to the right of the field its dashes, its name and its ends."""
     dashes = LINES[number]
-    parts = [polyline(points, width=2 * THICK, dashes=dashes)]
+    parts = [polyline(points, width=CURVE, dashes=dashes)]
     book = swept.found[0].after.book
     scope = next(s for s in book.instances("stack") if s.key == name)
     unit, digits = unit_of(book, scope)
@@ -136,7 +137,7 @@ def _curve(swept: Swept, name: str, points: list[Point], number: int) -> list[st
     known = [one for one in told if one is not None]
     y = TOP + 6.0 + number * 11.5
     x = WIDTH - RIGHT + 6.0
-    parts.append(polyline([(x, y - 1.0), (x + 14.0, y - 1.0)], width=2 * THICK, dashes=dashes))
+    parts.append(polyline([(x, y - 1.0), (x + 14.0, y - 1.0)], width=CURVE, dashes=dashes))
     parts.append(words((x + 16.0, y), _short(title_of(scope), LONGEST - 12), size=SMALL))
     parts.append(words((x + 16.0, y + 4.0), _short(_from_to(known, unit, digits), LONGEST - 12), size=SMALL))
     kept = swept.kept[stack_of(scope).name]
@@ -148,10 +149,10 @@ def _curve(swept: Swept, name: str, points: list[Point], number: int) -> list[st
 
 
 def _from_to(known: list[Result], unit: str, digits: int) -> str:
-    """The worst case at both ends of the range: `23.3 -> 41.3 of 30.0 um`; two-sided limits in full at the last."""
+    """The worst case at both ends of the range: `23.3 -> 41.3 of 30.0 um`; limits from below in full at the last."""
     first, last = known[0], known[-1]
     if last.stack.low is not None:
-        return limits_in_words(last, unit, digits) + " at the end"
+        return f"last {limits_in_words(last, unit, digits)}"
     return f"{in_unit(first.combined.worst.high, unit, digits)} to {limits_in_words(last, unit, digits)}"
 
 
