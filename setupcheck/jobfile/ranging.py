@@ -19,7 +19,7 @@ FIGURES = 3
 PARTS = 20
 """The step of a turning point is the power of ten at or below this part of the step between values. Source: our choice."""
 
-_END = r"\s*(±?)([+-]?(?:[0-9]{1,12}(?:\.[0-9]{1,12})?|\.[0-9]{1,12}))(\s*(?:[^\s0-9.,/][^.,/]{0,11}|1/min)?)\s*"
+_END = r"\s*(±?)([+-]?(?:[0-9]{1,12}(?:\.[0-9]{1,12})?|\.[0-9]{1,12}))(\s*(?:[^\s0-9.,/][^0-9.,/]{0,11}|1/min)?)\s*"
 _RANGE = re.compile(f"{_END}\\.\\.{_END}(?:/\\s*([0-9]{{1,6}})\\s*)?")
 
 
