@@ -4,16 +4,13 @@
 
 import sys
 from pathlib import Path
-from typing import TYPE_CHECKING, Annotated
+from typing import Annotated
 
 import typer
 
 from setupcheck.cli.review import EXIT, day_of
 from setupcheck.cli.writing import refuse_place, write_whole
 from setupcheck.errors import printable
-
-if TYPE_CHECKING:
-    from setupcheck.flow import Varied
 
 
 def command(
@@ -46,17 +43,14 @@ def command(
 
     Example: setupcheck vary jobs/rotator-worm-wheel.yaml --set 'setups.30.hold.centre.runout=60 um'
     """
+    from functools import partial
+
     from setupcheck.flow import review, vary
-    from setupcheck.jobfile.changing import Change, read_change
-    from setupcheck.jobfile.ranging import Range, read_range
+    from setupcheck.report.vary import as_json as in_json
+    from setupcheck.report.vary import as_text, typed_changes
 
     day = day_of(on) if on is not None else None
-    asked: list[Change | Range] = []
-    for text in changes:
-        change = read_change(text)
-        asked.append(read_range(change) or change)
-    spans = [one for one in asked if isinstance(one, Range)]
-    singles = [one for one in asked if isinstance(one, Change)]
+    singles, spans = typed_changes(changes)
     if len(spans) > 1:
         raise typer.BadParameter("write one range at a time, and one value for the others", param_hint="--set")
     if svg is not None:
@@ -65,13 +59,8 @@ def command(
         refuse_place(svg, force=force)
     before = review(job, house=house, on=day, devices=record)
 
-    def again(these: list[Change]) -> "Varied":
-        return vary(before, these, house=house, on=day, devices=record)
-
+    again = partial(vary, before, house=house, on=day, devices=record)
     if not spans:
-        from setupcheck.report.vary import as_json as in_json
-        from setupcheck.report.vary import as_text
-
         found = again(singles)
         sys.stdout.write(in_json(found) if as_json else as_text(found, everything=everything))
         raise typer.Exit(EXIT[found.after.verdict])

@@ -4,17 +4,19 @@ from __future__ import annotations
 
 import json
 import math
-from collections.abc import Iterator
+from collections.abc import Iterator, Sequence
 
 from setupcheck.flow import Review, Varied
-from setupcheck.notation import FACTOR
+from setupcheck.jobfile.changing import Change, read_change
+from setupcheck.jobfile.ranging import Range, read_range
+from setupcheck.notation import FACTOR, fixed, show
 from setupcheck.quantities.book import Book, Known, Scope
 from setupcheck.quantities.judged import Result
 from setupcheck.quantities.scopes import stack_of
 from setupcheck.record import record
 from setupcheck.report.json import DRAWN_DIGITS, FORMAT, METRIC, plain_number
 from setupcheck.report.text import limits_in_words
-from setupcheck.report.wording import clean, in_unit, title_of, unit_of, wrap
+from setupcheck.report.wording import clean, title_of, unit_of, wrap
 from setupcheck.rulebook import VERDICTS, Finding
 
 NUMBERS_SHOWN = 20
@@ -75,6 +77,22 @@ class Asked:
         return max((_apart(a, b) for a, b in zip(_ends(self.before), _ends(self.after), strict=True)), default=0.0)
 
 
+def typed_changes(texts: Sequence[str]) -> tuple[list[Change], list[Range]]:
+    """What `--set` asks for: single values, and ranges.
+
+    Raises: SetupcheckError for a text that is not KEY=VALUE, and for a range that is none.
+    """
+    changes: list[Change] = []
+    ranges: list[Range] = []
+    for change in map(read_change, texts):
+        span = read_range(change)
+        if span is None:
+            changes.append(change)
+        else:
+            ranges.append(span)
+    return changes, ranges
+
+
 def turned(found: Varied) -> list[Turned]:
     """Findings that are not the same before and after, the gravest first; those that only pass now or passed are left out."""
     before = {(f.rule, f.key): f for f in found.before.evaluation.findings}
@@ -104,9 +122,14 @@ def asked(found: Varied) -> list[Asked]:
 
 
 def moved(found: Varied) -> list[Moved]:
-    """Every number that either review looked at and both have, where it moved; the biggest relative move first."""
+    """Every number of the Book that both reviews have, where it moved; the biggest relative move first."""
     before, after = _scopes(found.before), _scopes(found.after)
-    wanted = {(name, scope.kind, scope.key) for one in (found.before, found.after) for name, scope in one.book.made}
+    wanted = {
+        (name, scope.kind, scope.key)
+        for name, quantity in found.after.book.quantities.items()
+        if quantity.unit
+        for scope in found.after.book.instances(quantity.per)
+    }
     told = []
     for name, *at in sorted(wanted):
         was, now = before.get(tuple(at)), after.get(tuple(at))
@@ -216,8 +239,7 @@ def _moved(found: Varied, everything: bool) -> Iterator[str]:
     shown = seen if everything else seen[:NUMBERS_SHOWN]
     for one in shown:
         was, now = _pair(one)
-        unit = "" if one.unit in ("", "1") else f" {one.unit}"
-        yield from wrap(f"{one.name}  {was} -> {now}{unit}{_percent(one)}", first="  ", rest="      ")
+        yield from wrap(f"{one.name}  {was} -> {now}{_percent(one)}", first="  ", rest="      ")
     if len(seen) > len(shown):
         yield f"  and {len(seen) - len(shown)} more, which --all shows"
     if len(told) > len(seen):
@@ -225,8 +247,10 @@ def _moved(found: Varied, everything: bool) -> Iterator[str]:
 
 
 def _pair(one: Moved) -> tuple[str, str]:
+    """Before and after as they are shown, the unit at the second."""
     unit = one.unit or "1"
-    return in_unit(one.before, unit, one.digits), in_unit(one.after, unit, one.digits)
+    was, now = (show(value, unit, one.digits) for value in (one.before, one.after))
+    return fixed(one.before * FACTOR[unit], one.digits) if was != now else now, now
 
 
 def _percent(one: Moved) -> str:

@@ -7,7 +7,6 @@ from collections.abc import Callable
 from decimal import Decimal
 
 from setupcheck.quantities.judged import Result
-from setupcheck.quantities.scopes import stack_of
 from setupcheck.report.svg import THIN, Point, line, picture, polyline, room, words
 from setupcheck.report.text import limits_in_words
 from setupcheck.report.vary_range import Swept, moving
@@ -22,9 +21,11 @@ MOST_CURVES = 8
 LINES = ("", "4 1.2", "1.2 1.2", "6 1.2 1.2 1.2", "2.5 2.5", "8 2", "4 1 1 1 1 1", "0.5 1.5")
 """Dashes of the curves [mm of paper], one kind for each. Our choice."""
 SMALL = 2.6
+KEY_HEIGHT = 12.5
+"""Height that each curve's words take [mm]. Our choice."""
 CURVE, LIMIT_LINE = 0.35, 0.9
 """Line widths [mm]: a curve, and the line of the limit, which no curve may be taken for. Our choice."""
-LONGEST = 62
+LONGEST = 54
 """Characters of a line of text to the right of the curves. Our choice, for its room."""
 CEILING = 3.0
 """Most of a limit that is drawn: what takes more leaves at the top. Our choice."""
@@ -46,8 +47,8 @@ def as_drawing(swept: Swept) -> str:
         return LEFT + across * (WIDTH - LEFT - RIGHT), HEIGHT - BOTTOM - up * (HEIGHT - TOP - BOTTOM)
 
     job = swept.before.loaded.job
-    title = _short(f"{clean(job.job)}: {clean(job.title)}" if job.job else clean(job.title), 90)
-    parts = [words((8.0, 9.0), title, size=4.0, bold=True), words((8.0, 15.0), _short(_what(swept), 120))]
+    title = _short(f"{clean(job.job)}: {clean(job.title)}" if job.job else clean(job.title), 78)
+    parts = [words((8.0, 9.0), title, size=4.0, bold=True), words((8.0, 15.0), _short(_what(swept), 105))]
     parts.append(words((8.0, 20.5), _verdict(swept), size=SMALL))
     parts += _grid(swept, put, floor, top)
     for number, (name, points) in enumerate(shown):
@@ -73,7 +74,7 @@ def _verdict(swept: Swept) -> str:
         f"{t.before} to {t.after} between {swept.range.written(t.low)} and {swept.range.written(t.high)}"
         for t in swept.turns
     ]
-    return _short(f"verdict turns (dotted) from {', '.join(told)}", 130)
+    return _short(f"verdict turns (dotted) from {', '.join(told)}", 118)
 
 
 def _curves(swept: Swept) -> list[tuple[str, list[Point]]]:
@@ -135,16 +136,14 @@ def _curve(swept: Swept, name: str, points: list[Point], number: int) -> list[st
     unit, digits = unit_of(book, scope)
     told = [one.after.results.get(name) for one in swept.found]
     known = [one for one in told if one is not None]
-    y = TOP + 6.0 + number * 11.5
-    x = WIDTH - RIGHT + 6.0
+    x, y = WIDTH - RIGHT + 6.0, TOP + 2.0 + number * KEY_HEIGHT
     parts.append(polyline([(x, y - 1.0), (x + 14.0, y - 1.0)], width=CURVE, dashes=dashes))
-    parts.append(words((x + 16.0, y), _short(title_of(scope), LONGEST - 12), size=SMALL))
-    parts.append(words((x + 16.0, y + 4.0), _short(_from_to(known, unit, digits), LONGEST - 12), size=SMALL))
-    kept = swept.kept[stack_of(scope).name]
-    if kept:
-        turn = kept[0]
-        said = f"{turn.before} to {turn.after} at {swept.range.written(turn.low)} to {swept.range.written(turn.high)}"
-        parts[-1] = words((x + 16.0, y + 4.0), _short(f"{_from_to(known, unit, digits)}; {said}", LONGEST), size=SMALL)
+    says = [title_of(scope), _from_to(known, unit, digits)]
+    for turn in swept.kept[name][:1]:
+        low, high = swept.range.written(turn.low), swept.range.written(turn.high)
+        says.append(f"{turn.before} to {turn.after} between {low} and {high}")
+    for i, text in enumerate(says):
+        parts.append(words((x + 16.0, y + i * 3.7), _short(text, LONGEST), size=SMALL))
     return parts
 
 

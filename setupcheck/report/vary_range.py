@@ -5,6 +5,7 @@ from __future__ import annotations
 import json
 from collections.abc import Callable, Iterator, Sequence
 from decimal import Decimal
+from itertools import pairwise
 
 from setupcheck.flow import Review, Varied
 from setupcheck.jobfile.changing import Change
@@ -70,7 +71,7 @@ def sweep(before: Review, span: Range, others: Sequence[Change], again: Callable
 
 
 def _turns(span: Range, at: Callable[[Decimal], Varied], says: Callable[[Varied], str]) -> Iterator[Turn]:
-    for start, end in zip(span.numbers, span.numbers[1:], strict=False):
+    for start, end in pairwise(span.numbers):
         first = says(at(start))
         while first != says(at(end)):  # fail, then warn, then pass: each turn by itself
             low, high = start, end
