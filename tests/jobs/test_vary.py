@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import re
 from decimal import Decimal
+from pathlib import Path
 
 import pytest
 
@@ -272,3 +273,20 @@ def test_one_entry_is_set_once(first: str, second: str, says: str) -> None:
 def test_what_shows_only_along_the_route_says_where_it_comes_from() -> None:
     with pytest.raises(JobError, match=r"with --set setups\.30\.part=housing"):
         vary(shipped("jobs/rotator-worm-wheel.yaml"), sets("setups.30.part=housing"))
+
+
+def test_a_shops_record_counts_on_both_sides(tmp_path: Path) -> None:
+    record = tmp_path / "devices.csv"
+    rows = "".join(f"four-jaw,runout,2026-0{i}-01,{size} um,\n" for i, size in enumerate((3, 4, 3, 5, 4, 3), 1))
+    record.write_text("device,what,date,value,note\n" + rows, encoding="utf-8")
+    change = "setups.50.hold.centre={on: hub, by: four-jaw, runout: {device: four-jaw}}"
+    old = "centre: {on: hub, by: four-jaw, runout: {at_most: 6 um, measured: 4 um, uncertainty: 1 um}}"
+    written = tmp_path / "job.yaml"
+    written.write_text(wheel((old, change.partition("=")[2].join(("centre: ", "")))), encoding="utf-8")
+    found = vary(shipped("jobs/rotator-worm-wheel.yaml"), sets(change), devices=record)
+    want = review(written, devices=record)
+    assert told(found.after) == told(want)
+    assert found.after.devices is not None
+    assert [use.taken for use in found.after.devices.uses] == [True]
+    assert found.before.devices is not None
+    assert not any(use.taken for use in found.before.devices.uses)
