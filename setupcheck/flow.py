@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable, Mapping
+from collections.abc import Callable, Mapping, Sequence
 from dataclasses import field
 from functools import cache
 from pathlib import Path
@@ -34,6 +34,7 @@ from setupcheck.shipped import shipped
 
 if TYPE_CHECKING:
     from setupcheck.division.results import Reduced
+    from setupcheck.jobfile.changing import Change
     from setupcheck.quantities.against import Against
     from setupcheck.quantities.own_values import RecordUse
     from setupcheck.quantities.remedies import Remedy
@@ -119,6 +120,37 @@ def review(
         on,
         uses,
     )
+
+
+@record(eq=False)
+class Varied:
+    """A job before and after some of its entries were replaced or added."""
+
+    before: Review
+    after: Review
+    changes: tuple[Change, ...]
+
+
+def vary(
+    job: LoadedJob | Review | str | Path,
+    changes: Sequence[Change],
+    *,
+    house: str | Path | None = None,
+    on: str | None = None,
+    devices: str | Path | None = None,
+) -> Varied:
+    """Judge a job as it stands and with entries replaced or added, all at once. The file is not written to.
+
+    job  a Review has been made with the same house limits, day and record: it is not made again
+    Random draws are named after their causes, so that nothing moves which the changes do not reach.
+    Raises: JobError for the file; JobError for the changes, each problem saying so; RuleBookError.
+    """
+    from setupcheck.jobfile.changing import changed, from_set  # no review needs it
+
+    before = job if isinstance(job, Review) else review(job, house=house, on=on, devices=devices)
+    with from_set(changes):  # also what shows only along the route
+        after = review(changed(before.loaded, changes), house=house, on=on, devices=devices)
+    return Varied(before, after, tuple(changes))
 
 
 def with_devices(loaded: LoadedJob, path: str | Path) -> tuple[LoadedJob, RecordUse]:

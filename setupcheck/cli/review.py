@@ -36,7 +36,7 @@ def command(
     if color not in ("auto", "always", "never"):
         raise typer.BadParameter("write auto, always or never", param_hint="--color")
     if on is not None:
-        on = _day(on)
+        on = day_of(on)
     worst = 0
     for path in jobs:
         try:
@@ -50,7 +50,7 @@ def command(
     raise typer.Exit(worst)
 
 
-def _day(text: str) -> str:
+def day_of(text: str) -> str:
     import datetime
 
     try:

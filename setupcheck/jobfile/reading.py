@@ -133,6 +133,14 @@ def read_job_text(text: str, file: str) -> LoadedJob:
         raise JobError(
             file, tree.lines, (Problem("", 1, 1, 1, "a job file is a map of keys", "Start with setupcheck: 1"),)
         )
+    return read_tree(tree, hashlib.sha256(text.encode()).hexdigest())
+
+
+def read_tree(tree: Tree, sha256: str) -> LoadedJob:
+    """Read and check the tree of a job file, a map; `sha256` is that of the text it came from.
+
+    Raises: JobError with every problem of the file.
+    """
     tree, problems = shapes.meant(tree)
     assert isinstance(tree.data, dict)
     job: Job | None = None
@@ -144,8 +152,8 @@ def read_job_text(text: str, file: str) -> LoadedJob:
         place = tree.key_place(miss.path) if miss.key else tree.place(miss.path)
         problems.append(_at(place, tree.dotted(miss.path), miss.message))
     if problems or tree.problems or job is None:
-        raise JobError(file, tree.lines, tree.together(p for p in problems if not _behind_comma(p, tree)))
-    return LoadedJob(job, tree, Path(file).name, hashlib.sha256(text.encode()).hexdigest())
+        raise JobError(tree.file, tree.lines, tree.together(p for p in problems if not _behind_comma(p, tree)))
+    return LoadedJob(job, tree, Path(tree.file).name, sha256)
 
 
 def _behind_comma(problem: Problem, tree: Tree) -> bool:

@@ -103,7 +103,7 @@ def as_data(found: Review) -> dict[str, object]:
     }
 
 
-def _number(value: float) -> float:
+def plain_number(value: float) -> float:
     """A finite number at 12 significant digits, never -0."""
     return float(f"{value:.{DIGITS}g}") + 0.0 if math.isfinite(value) else 0.0
 
@@ -116,7 +116,7 @@ def _settled(value: float) -> float:
 def _shown(value: float | None, unit: str) -> float | None:
     if value is None:
         return None
-    return _number(value * FACTOR.get(METRIC.get(unit, unit), 1.0))
+    return plain_number(value * FACTOR.get(METRIC.get(unit, unit), 1.0))
 
 
 def _ends(low: float, high: float, unit: str, *, signed: bool) -> object:
@@ -186,15 +186,15 @@ def _combined(result: Result, unit: str) -> dict[str, object]:
         "worst": _ends(c.worst.low, c.worst.high, unit, signed=signed),
         "rss": _ends(c.rss.low, c.rss.high, unit, signed=signed),
         "likely": _ends(_settled(c.likely.low), _settled(c.likely.high), unit, signed=signed),
-        "chance": _number(c.chance) if c.chance is not None else None,
-        "chance_error": _number(c.chance_error) if c.chance_error is not None else None,
+        "chance": plain_number(c.chance) if c.chance is not None else None,
+        "chance_error": plain_number(c.chance_error) if c.chance_error is not None else None,
         "causes": [
             {
                 "cause": clean(s.cause.key),
                 "op": s.cause.op,
                 "mode": s.cause.mode,
                 "worst": _shown(s.worst, unit),
-                "share": _number(s.share),
+                "share": plain_number(s.share),
             }
             for s in c.shares
         ],

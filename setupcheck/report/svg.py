@@ -44,10 +44,13 @@ def line(start: Point, end: Point, *, width: float = THIN, dashes: str = "") -> 
     return tag("line", x1=start[0], y1=start[1], x2=end[0], y2=end[1], stroke="black", stroke_width=width, **more)
 
 
-def polyline(points: Iterable[Point], *, width: float = THICK) -> str:
+def polyline(points: Iterable[Point], *, width: float = THICK, dashes: str = "") -> str:
     """An open line through points."""
     path = " ".join(f"{number(x)},{number(y)}" for x, y in points)
-    return tag("polyline", points=path, fill="none", stroke="black", stroke_width=width, stroke_linejoin="round")
+    more: dict[str, str | float] = {"stroke_dasharray": dashes} if dashes else {}
+    return tag(
+        "polyline", points=path, fill="none", stroke="black", stroke_width=width, stroke_linejoin="round", **more
+    )
 
 
 def polygon(points: Iterable[Point], *, fill: str = "black") -> str:

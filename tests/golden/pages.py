@@ -6,13 +6,20 @@ python -m tests.golden.pages
 from __future__ import annotations
 
 import re
+from functools import cache
 from pathlib import Path
 
 from setupcheck.errors import JobError
-from setupcheck.flow import load_job, prepare, review
+from setupcheck.flow import load_job, prepare, review, vary
+from setupcheck.jobfile.changing import Change
+from setupcheck.jobfile.ranging import read_range
 from setupcheck.jobfile.reading import read_job_text
 from setupcheck.report.index_table import as_index_table
 from setupcheck.report.text import as_text
+from setupcheck.report.vary import as_text as varied_as_text
+from setupcheck.report.vary_drawing import as_drawing
+from setupcheck.report.vary_range import Swept, sweep
+from setupcheck.report.vary_range import as_text as swept_as_text
 
 ROOT = Path(__file__).resolve().parents[2]
 HERE = Path(__file__).resolve().parent
@@ -43,7 +50,29 @@ def reports() -> dict[str, str]:
     found = {f"{job.stem}.txt": as_text(review(job)) for job in sorted((ROOT / "jobs").glob("*.yaml"))}
     found["shimmed-jaws.txt"] = as_text(review(read_job_text(SHIMMED, "shimmed-jaws.yaml")))
     found["index-table.txt"] = index_table()
+    found["vary.txt"] = varied()
+    found["vary-range.txt"] = swept_as_text(swept())
     return found
+
+
+def drawings() -> dict[str, str]:
+    """File name -> SVG of every golden drawing."""
+    return {"vary-range.svg": as_drawing(swept())}
+
+
+def varied() -> str:
+    """What if the finished hub had been trued to 9 um instead of 4."""
+    changes = [Change("setups.50.hold.centre.runout.measured", "9 um")]
+    return varied_as_text(vary(ROOT / "jobs" / "rotator-worm-wheel.yaml", changes))
+
+
+@cache
+def swept() -> Swept:
+    """The same over a range."""
+    before = review(ROOT / "jobs" / "rotator-worm-wheel.yaml")
+    span = read_range(Change("setups.50.hold.centre.runout.measured", "2um..10um/5"))
+    assert span is not None
+    return sweep(before, span, [], lambda changes: vary(before, changes))
 
 
 def index_table() -> str:
@@ -87,6 +116,9 @@ def excerpts() -> dict[str, str]:
     good = reports()["rotator-worm-wheel.txt"].splitlines()
     drawn = reports()["wheel-on-spindle.txt"].splitlines()
     table = reports()["index-table.txt"].splitlines()
+    what_if = reports()["vary.txt"].splitlines()
+    range_of = reports()["vary-range.txt"].splitlines()
+    moved = first_of("WHAT WAS ASKED", what_if)
     asked = good.index("WHAT WAS ASKED, at its worst")
     dial = next(i for i, line in enumerate(good) if line.startswith("  op 40, run-out on hub: up to"))
     return {
@@ -96,6 +128,8 @@ def excerpts() -> dict[str, str]:
         "contact": "\n".join(drawn[first_of("CONTACT", drawn) : drawn.index("WORKED OUT") - 1]),
         "worked": "\n".join(good[good.index("WORKED OUT") : good.index("", good.index("WORKED OUT"))]),
         "index": "\n".join([*table[2:26], "  …", *table[-5:]]),
+        "vary": "\n".join([*what_if[1:15], "  …", *what_if[moved - 1 : moved + 5], "  …"]),
+        "vary-range": "\n".join([*range_of[1 : first_of("WHAT WAS ASKED", range_of) - 1], "  …"]),
         "slips": slips(),
         "mistakes": mistakes(),
     }
@@ -113,7 +147,7 @@ def readme_with_excerpts() -> str:
 
 def write() -> None:
     """Write golden files and README excerpts anew."""
-    for name, text in reports().items():
+    for name, text in {**reports(), **drawings()}.items():
         (HERE / name).write_text(text, encoding="utf-8")
     (ROOT / "README.md").write_text(readme_with_excerpts(), encoding="utf-8")
 

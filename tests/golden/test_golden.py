@@ -12,6 +12,11 @@ def test_a_report_is_the_same_to_the_letter(name: str) -> None:
     assert (pages.HERE / name).read_text(encoding="utf-8") == pages.reports()[name]
 
 
+@pytest.mark.parametrize("name", sorted(pages.drawings()))
+def test_a_drawing_is_the_same_to_the_letter(name: str) -> None:
+    assert (pages.HERE / name).read_text(encoding="utf-8") == pages.drawings()[name]
+
+
 def test_the_excerpts_of_the_readme_are_real() -> None:
     assert (pages.ROOT / "README.md").read_text(encoding="utf-8") == pages.readme_with_excerpts()
 

@@ -1,0 +1,205 @@
+"""A job with some of its entries replaced or added by path, read again by the same reader: what if."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator, Sequence
+from contextlib import contextmanager
+from dataclasses import replace
+
+from setupcheck.errors import JobError, Problem, SetupcheckError, printable
+from setupcheck.jobfile.reading import LoadedJob, Loc, read_tree
+from setupcheck.notation import nearest, quoted
+from setupcheck.record import record
+from setupcheck.yamlfile import Data, Node, Place, Tree, parse
+
+LONGEST_SHOWN = 60
+"""Characters of a change that a message repeats. Source: our screening choice."""
+MOST_OFFERED = 8
+"""Keys or names offered where none is near. Source: our screening choice."""
+LONGEST_CHANGE = 2_000
+"""Characters of one change. Source: our screening choice; an entry of a job file is one line."""
+
+
+@record
+class Change:
+    """One entry to replace or add.
+
+    key    path as the reports print it, `setups.30.hold.centre.clearance`
+    value  in the job file's own notation, `20 um` or `{at_most: 10 um}`
+    """
+
+    key: str
+    value: str
+
+    def told(self) -> str:
+        """As it is typed, cut short where it is long."""
+        text = printable(f"{self.key}={self.value}")
+        return text if len(text) <= LONGEST_SHOWN else text[: LONGEST_SHOWN - 1] + "\u2026"
+
+
+def read_change(text: str) -> Change:
+    """`KEY=VALUE` taken apart.
+
+    Raises: SetupcheckError where one of them is missing.
+
+    >>> read_change("setups.30.hold.centre.clearance=20 um")
+    Change(key='setups.30.hold.centre.clearance', value='20 um')
+    """
+    key, sign, value = text.partition("=")
+    key, value = key.strip(), value.strip()
+    shown = quoted(text)
+    if not sign or not key:
+        raise SetupcheckError(
+            f"--set {shown} is not KEY=VALUE. Write a path of the job file and its new value, as in "
+            "--set 'setups.30.hold.centre.clearance=20 um'"
+        )
+    if not value:
+        raise SetupcheckError(f"--set {shown} has nothing behind its =. Write the new value, as in '{key[:60]}=20 um'")
+    if len(text) > LONGEST_CHANGE or "\n" in text or "\r" in text:
+        raise SetupcheckError(
+            f"--set {shown} has more than one line, or more than {LONGEST_CHANGE} characters. "
+            "Write one line, as in {at_most: 10 um, device: four-jaw}"
+        )
+    return Change(key, value)
+
+
+def changed(loaded: LoadedJob, changes: Sequence[Change]) -> LoadedJob:
+    """The job with its entries replaced or added, all at once, and checked as if the file said so.
+
+    Places of what is new are those of what stood there, so that messages point at the file.
+    Raises: JobError for a path or a value that cannot be, each problem saying that it comes from --set.
+    """
+    tree = loaded.tree
+    ways: list[tuple[Loc, Change]] = []
+    for change in changes:
+        loc = _way(loaded, change)
+        for other, first in ways:
+            if loc[: len(other)] == other or other[: len(loc)] == loc:
+                how = (
+                    "is set twice"
+                    if loc == other
+                    else f"stands together with {quoted(first.key)}, one inside the other"
+                )
+                raise _refused(loaded, change, tree.place(loc), how, "Set it once")
+        ways.append((loc, change))
+    for loc, change in ways:
+        tree = _put(tree, loc, _value(change))
+    with from_set(changes):
+        return replace(read_tree(tree, loaded.sha256), file=loaded.file)
+
+
+@contextmanager
+def from_set(changes: Sequence[Change]) -> Iterator[None]:
+    """Problems of a changed job say which --set they come from: the file itself has none."""
+    try:
+        yield
+    except JobError as wrong:
+        raise JobError(wrong.file, wrong.lines, [_said(problem, changes) for problem in wrong.problems]) from None
+
+
+def _said(problem: Problem, changes: Sequence[Change]) -> Problem:
+    if "--set " in problem.problem:
+        return problem
+    mine = [c for c in changes if problem.path == c.key or problem.path.startswith((f"{c.key}.", f"{c.key}["))]
+    mine = mine or [c for c in changes if c.key.rpartition(".")[0] == problem.path] or list(changes)
+    return replace(problem, problem=f"with --set {' and '.join(c.told() for c in mine)}: {problem.problem}")
+
+
+def _value(change: Change) -> Data:
+    """The value as the file's own reader takes it.
+
+    Raises: JobError that shows the value.
+    """
+    return parse(change.value, f"--set {change.key[:LONGEST_SHOWN]}").data
+
+
+def _way(loaded: LoadedJob, change: Change) -> Loc:
+    """The way to an entry; all of it is in the file but the last step, which may be new.
+
+    Raises: JobError with the names that are known where the path leaves the file.
+    """
+    loc = loaded.loc(change.key)
+    node: Data = loaded.tree.data
+    for at, step in enumerate(loc):
+        last = at == len(loc) - 1
+        place = loaded.tree.place(loc[:at])
+        around = loaded.tree.dotted(loc[:at]) or "the job file"
+        if isinstance(node, dict) and isinstance(step, str):
+            if step in node:
+                node = node[step]
+            elif last:
+                node = None
+            else:
+                raise _refused(loaded, change, place, f"{quoted(step)} is not in {around}", _offer(step, node))
+        elif isinstance(node, list):
+            if isinstance(step, int) and 0 <= step < len(node):
+                node = node[step]
+            elif not (last and step == len(node) and loc[:at] != ("setups",)):
+                raise _refused(loaded, change, place, f"{around} has no such entry", _entries(node, around))
+        elif node is None and last and isinstance(step, str):
+            pass  # `bore:` with nothing behind it takes its first key
+        else:
+            said = f"{around} has no keys inside: it says {quoted(node) if node is not None else 'nothing'}"
+            raise _refused(loaded, change, place, said, f"Set it as a whole: --set '{around}={{{step}: …}}'")
+    if not loc:
+        raise _refused(loaded, change, loaded.tree.place(()), "no entry is named", "Write its path before the =")
+    return loc
+
+
+def _offer(step: str, node: dict[str, Data]) -> str:
+    near = nearest(step, node)
+    if near is not None:
+        return f"Did you mean {near}?"
+    known = list(node)
+    return f"There: {', '.join(known[:MOST_OFFERED])}{' …' if len(known) > MOST_OFFERED else ''}"
+
+
+def _entries(node: list[Data], around: str) -> str:
+    ops = [str(one["op"]) for one in node if isinstance(one, dict) and "op" in one]
+    if ops:
+        return f"There: {', '.join(f'{around}.{op}' for op in ops[:MOST_OFFERED])}"
+    return f"There: {around}[1] to {around}[{len(node)}]" if node else "Its list is empty"
+
+
+def _refused(loaded: LoadedJob, change: Change, place: Place, problem: str, hint: str) -> JobError:
+    says = f"--set {change.told()}: {problem}"
+    return JobError(
+        loaded.tree.file,
+        loaded.tree.lines,
+        [Problem(change.key[:LONGEST_SHOWN], place.line, place.column, place.length, says, hint)],
+    )
+
+
+def _put(tree: Tree, loc: Loc, value: Data) -> Tree:
+    """The tree with one value in another place's stead; nothing of the old tree is written to."""
+    data, node = _within(tree.data, tree.root, loc, value)
+    return replace(tree, data=data, places=node)
+
+
+def _within(data: Data, node: Node, loc: Loc, value: Data) -> tuple[Data, Node]:
+    if not loc:
+        return value, _places(value, node.place, node.key_place)
+    step, rest = loc[0], loc[1:]
+    new_there = Node(node.key_place, node.key_place)
+    if isinstance(step, int):
+        entries = list(data) if isinstance(data, list) else []
+        nodes = list(node.inside) if isinstance(node.inside, list) else []
+        old, there = (entries[step], nodes[step]) if step < len(entries) else (None, new_there)
+        put, stands = _within(old, there, rest, value)
+        entries[step : step + 1], nodes[step : step + 1] = [put], [stands]
+        return entries, Node(node.place, node.key_place, nodes)
+    keys = dict(data) if isinstance(data, dict) else {}
+    inside = dict(node.inside) if isinstance(node.inside, dict) else {}
+    keys[step], inside[step] = _within(keys.get(step), inside.get(step, new_there), rest, value)
+    return keys, Node(node.place, node.key_place, inside)
+
+
+def _places(value: Data, place: Place, key_place: Place) -> Node:
+    """Everything inside a new value stands where the old one stood."""
+    inner: Iterator[tuple[str, Node]]
+    if isinstance(value, dict):
+        inner = ((key, _places(one, place, place)) for key, one in value.items())
+        return Node(place, key_place, dict(inner))
+    if isinstance(value, list):
+        return Node(place, key_place, [_places(one, place, place) for one in value])
+    return Node(place, key_place)
