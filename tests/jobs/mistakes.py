@@ -87,13 +87,16 @@ def _mistake(row: dict[str, object]) -> Mistake:
 def copy_of(mistake: Mistake) -> str:
     """The copy to try: the first place of a mistake, with a head that does not say where it is."""
     place = mistake.places[0]
+    modeline, planted = place.planted().split("\n", 1)
+    assert "$schema=../rules/" in modeline
     return (
+        f"{modeline.replace('../rules/', '../../rules/')}\n"
         f"# A copy of jobs/{place.job}.yaml with one planted mistake: one line, in one operation, is not as it should be.\n"
         f"# Find it by eye first, then let `setupcheck review jobs/mistakes/{mistake.name}.yaml` find it, change the line as\n"
         "# the report says, and review again. Comments and titles are those of the good job. The answer stands in\n"
         "# tests/jobs/overlays.yaml. Written by `python -m tests.jobs.mistakes`; changes made by hand are lost.\n"
         "#\n"
-        f"{place.planted()}"
+        f"{planted}"
     )
 
 

@@ -108,6 +108,18 @@ def test_the_second_plane_takes_the_device_of_the_first() -> None:
             assert valid
 
 
+def test_the_shipped_file_is_fresh() -> None:
+    """Write it anew with `setupcheck schema -o rules/job.schema.json --force`."""
+    assert (ROOT / "rules" / "job.schema.json").read_text(encoding="utf-8") == TEXT
+
+
+@pytest.mark.parametrize("job", JOBS, ids=lambda p: p.name)
+def test_the_first_line_of_every_shipped_job_names_the_shipped_file(job: Path) -> None:
+    first = read_text(job).splitlines()[0]
+    assert first.startswith("# yaml-language-server: $schema=")
+    assert (job.parent / first.partition("=")[2]).resolve() == ROOT / "rules" / "job.schema.json"
+
+
 # -- descriptions ----------------------------------------------------------------------------------------------------
 
 
