@@ -19,10 +19,11 @@ import math
 import numpy as np
 from numpy.typing import NDArray
 
+from setupcheck.division.amplitude import t_at
 from setupcheck.division.design import Term
 from setupcheck.division.fit import Fit
 from setupcheck.division.points import Points
-from setupcheck.division.results import Eccentric, Interval, Wave
+from setupcheck.division.results import Apart, Eccentric, Flanks, Interval, Wave
 from setupcheck.physics.student_t import f_above
 from setupcheck.record import record
 
@@ -85,6 +86,30 @@ def eccentric(
         0 if both else side,
         _looks(fit, spread, nu, alpha, grows) if both and alpha else "",
         wave.open if alpha is not None or both else wave.open or "the pressure angle of the teeth is not stated",
+    )
+
+
+def apart(flanks: Flanks | None, off: Eccentric | None, wheel: Wheel, nu: float) -> Apart | None:
+    """Teeth off their axis and dividing told apart, where both flanks look like neither alone.
+
+    The difference of the flanks is 2 tan(alpha) (-b, a) of the eccentric part (a, b) of their mean; the rest of the mean is what
+    dividing made, which both flanks see alike.  Source: the relations above.
+    """
+    if flanks is None or off is None or off.looks != "neither" or not wheel.pressure_angle or wheel.radius is None:
+        return None
+    a, b, c, d = flanks.vector
+    spread = 2.0 * math.tan(wheel.pressure_angle)
+    own = np.array([d, -c]) / spread
+    variance = max(flanks.covariance[2][2], flanks.covariance[3][3]) / spread**2
+    direction = math.atan2(own[0], -own[1]) % math.tau
+    rest = np.array([a, b]) - own
+    return Apart(
+        wheel.radius * float(np.hypot(*own)),
+        wheel.radius * t_at(nu) * math.sqrt(variance),
+        direction,
+        wheel.tooth(direction),
+        float(np.hypot(*rest)),
+        math.atan2(rest[1], rest[0]) % math.tau,
     )
 
 

@@ -13,7 +13,7 @@ from setupcheck.division import doubts
 from setupcheck.division.amplitude import Length, length_of, t_at
 from setupcheck.division.columns import ARCSEC
 from setupcheck.division.design import Design, Term, columns, comes_round, design, places
-from setupcheck.division.eccentric import Wheel, eccentric
+from setupcheck.division.eccentric import Wheel, apart, eccentric
 from setupcheck.division.fit import SURE, Fit, Scatter, fitted, scatter_of
 from setupcheck.division.points import Points, Prepared, gap_of, prepare, without
 from setupcheck.division.readings import Readings
@@ -103,6 +103,7 @@ def reduce(
     )
     own = next((w for w in waves if worm_ratio is not None and w.harmonic == worm_ratio), None)
     off = eccentric(found.fit, found.spread, found.nu, waves, wheel, turned=turned, grows=grows, points=found.points)
+    flanks = _flanks(found, turned, grows)
     return Reduced(
         verdict="open" if reasons or not waves or waves[0].open else "told",
         reasons=tuple(dict.fromkeys([*reasons, *_first(waves), *_nothing(found, waves)])),
@@ -115,7 +116,8 @@ def reduce(
         waves=waves,
         unseen=unseen,
         eccentric=off,
-        flanks=_flanks(found, turned, grows),
+        flanks=flanks,
+        apart=apart(flanks, off, wheel, found.nu),
         worm=own,
         scatter=found.scatter.repeat if found.scatter.repeat_nu >= 3 and found.scatter.repeat is not None
         else _root(found.fit.square / found.fit.nu if found.fit.nu else math.nan),

@@ -67,6 +67,22 @@ class Flanks:
 
 
 @record
+class Apart:
+    """The first wave taken apart by both flanks, where it is neither an eccentric ring's alone nor dividing alone.
+
+    amount, within   teeth off their axis, and the 95 % half interval [mm];  direction, tooth  towards which [rad]
+    divided          amplitude of what dividing made [rad];  highest  where that is highest [rad]
+    """
+
+    amount: float
+    within: float
+    direction: float
+    tooth: int
+    divided: float
+    highest: float
+
+
+@record
 class Unseen:
     """A wave that these stations cannot show: why, and which waves it is taken for."""
 
@@ -119,6 +135,7 @@ class Reduced:
     drift       over the whole test [rad];  closure  last less first reading of the first station, None where not repeated
     reversal    forward less reverse [rad], None with why in `no_reversal`
     flanks      both flanks of the first wave, None where one was read
+    apart       the first wave taken apart by them, None where they show one thing alone
     places      stations that are whole pitches apart from the first
     worm        the wave of the own worm, None where it is not seen
     sighting    standard deviation of a direction sighted once in both faces [rad], degrees of freedom; None with one face
@@ -138,6 +155,7 @@ class Reduced:
     unseen: tuple[Unseen, ...]
     eccentric: Eccentric | None
     flanks: Flanks | None
+    apart: Apart | None
     worm: Wave | None
     scatter: float
     nu: int

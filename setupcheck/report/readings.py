@@ -93,6 +93,13 @@ def _answers(found: ReadBack) -> Iterator[str]:
         elif told:
             text += ", towards where is not told"
         yield from wrap(_open(text, "" if e.open in r.reasons else e.open), first="  ", rest="      ")
+        if r.apart is not None:
+            two, them = r.apart, "holes" if found.of.holes else "teeth"
+            yield from wrap(
+                f"taken apart by the flanks: {them} off their axis by {_one(found, two.amount)} ±{_one(found, two.within)} "
+                f"towards {place} {two.tooth}, and dividing {_sec(two.divided)}, highest at {_deg(two.highest)}",
+                first="      ", rest="      ",
+            )  # fmt: skip
         if e.flanks == "unknown" and told:
             yield from wrap(
                 "which flank was read is not said, so its pressure angle counts both ways",
@@ -270,6 +277,11 @@ def as_data(found: ReadBack) -> dict[str, object]:
         "eccentric": None if e is None else {
             "um": _interval(e.amount, 1000.0), "high_at_deg": _number(math.degrees(e.direction)), "tooth": e.tooth,
             "within_deg": _degrees(e.within), "flanks": e.flanks, "looks": e.looks, "open": e.open,
+        },
+        "apart": None if r.apart is None else {
+            "um": _number(r.apart.amount * 1000.0), "within_um": _number(r.apart.within * 1000.0), "tooth": r.apart.tooth,
+            "high_at_deg": _number(math.degrees(r.apart.direction)), "divided_arcsec": _number(r.apart.divided * arc),
+            "divided_most_at_deg": _number(math.degrees(r.apart.highest)),
         },
         "waves": [_wave_data(w) for w in r.waves],
         "without_flagged": [_wave_data(w) for w in r.without],

@@ -329,3 +329,21 @@ def test_readings_at_whole_pitches_say_what_they_leave_out_where_the_plan_has_it
 )
 def test_a_reamer_that_wanders_is_no_fault_of_the_holding(path: str, whose: str) -> None:
     assert owner(Cause("any", "length", 30, high=0.001, paths=(path,))) == whose
+
+
+def test_an_eccentric_ring_and_a_division_error_together_are_taken_apart(tmp_path: Path) -> None:
+    """20 draws: what each of the two planted comes back, the eccentricity inside its interval in 17 of them or more."""
+    inside = 0
+    for seed in range(20):
+        rng = random.Random(seed)
+        phi, at = rng.uniform(0.0, 360.0), rng.uniform(0.0, 360.0)
+        found, _ = told(written(tmp_path, e=0.010, phi=phi, divided=30.0, at=at, noise=0.5, seed=seed))
+        two = found.reduced.apart
+        assert two is not None
+        assert two.amount == pytest.approx(0.010, abs=0.0008)
+        assert abs((math.degrees(two.direction) - phi + 180.0) % 360.0 - 180.0) < 5.0
+        assert two.divided / ARCSEC == pytest.approx(30.0, abs=2.0)
+        assert abs((math.degrees(two.highest) - at + 180.0) % 360.0 - 180.0) < 5.0
+        inside += abs(two.amount - 0.010) <= two.within
+    assert inside >= 17
+    assert "taken apart by the flanks: teeth off their axis by" in said(found)
