@@ -78,6 +78,7 @@ def _own_parts(divide: Divide) -> dict[str, bool]:
         and not (by == "polygon" and divide.sighting is not None),
         "positions_error": placed and divide.positions_error is None,
         "plumb": sighted and divide.plumb is None,
+        "elevation": sighted and divide.plumb is None and divide.elevation is None,
         "collimation": mixed and divide.collimation is None,
         "trunnion": mixed and divide.trunnion is None,
         "polygon_tilt": by == "polygon" and divide.polygon_tilt is None,
