@@ -8,6 +8,7 @@ shown and never judged.
 from __future__ import annotations
 
 import math
+from collections.abc import Sequence
 
 import numpy as np
 from numpy.typing import NDArray
@@ -16,7 +17,7 @@ from setupcheck.ledger import teeth
 from setupcheck.ledger.account import Account
 from setupcheck.ledger.causes import TRUNCATION, TRUNCATION_2D, Cause, stream_key
 from setupcheck.ledger.figures import Figure, Push
-from setupcheck.ledger.route import Pattern, Scatter
+from setupcheck.ledger.route import Pattern, Periodic, Scatter, Shaped
 from setupcheck.record import record
 
 Reals = NDArray[np.floating]
@@ -110,6 +111,22 @@ class Draws:
                 total -= _single(a.imag - b.imag) * x.imag
         return total
 
+    def take_over(self, source: Draws, mine: Figure, theirs: Figure) -> None:
+        """Values that `source` drew for a figure, for the same figure with some causes changed: those of causes that are alike.
+
+        Their streams are alike too, so nothing but time changes.
+        """
+        known = {push.cause.identity: push.cause for push in theirs.pushes()}
+        for push in mine.pushes():
+            other = known.get(push.cause.identity)
+            if other is not None and _alike(push.cause, other) and other in source._causes:
+                self._causes.setdefault(push.cause, source._causes[other])
+        ours, given = getattr(mine, "pattern", None), getattr(theirs, "pattern", None)
+        if isinstance(ours, Pattern) and isinstance(given, Pattern) and _divided_alike(ours, given):
+            for held, drawn in ((self._arcs, source._arcs), (self._radials, source._radials)):
+                if id(given) in drawn:
+                    held.setdefault(id(ours), (ours, drawn[id(given)][1]))
+
     def scatter(self, scatter: Scatter, pattern: Pattern, *, outward: bool = False) -> Reals:
         """Per-place values of one scatter as lengths [mm], uniform within its bound, shape (trials, count).
 
@@ -150,6 +167,34 @@ class Draws:
                 total += np.asarray(pattern.outwards, dtype=np.float32)
             found = self._radials[id(pattern)] = (pattern, total)
         return found[1]
+
+
+def _alike(one: Cause, other: Cause) -> bool:
+    """Whether two causes of one name draw the same values; never said of what follows from other causes."""
+    fields = ("identity", "law", "high", "low", "spread", "mean", "pair")
+    return one.of is None and other.of is None and all(getattr(one, f) == getattr(other, f) for f in fields)
+
+
+def _divided_alike(one: Pattern, other: Pattern) -> bool:
+    """Whether dividing leaves the same errors at the places of two patterns, draw by draw."""
+    plain = ("count", "radius", "turn", "start", "rounding", "outwards")
+    if any(getattr(one, f) != getattr(other, f) for f in plain):
+        return False
+    return (
+        _each_alike(one.periodic, other.periodic, "harmonic")
+        and _each_alike(one.shaped, other.shaped, "shape")
+        and _each_alike(one.scatter, other.scatter, "along", "bound", "around", "outward", "either", "groups")
+    )
+
+
+def _each_alike(
+    mine: Sequence[Periodic | Shaped | Scatter], theirs: Sequence[Periodic | Shaped | Scatter], *fields: str
+) -> bool:
+    """Whether errors pair off, one by one: causes alike, and these entries the same."""
+    return len(mine) == len(theirs) and all(
+        _alike(a.cause, b.cause) and all(getattr(a, f) == getattr(b, f) for f in fields)
+        for a, b in zip(mine, theirs, strict=True)
+    )
 
 
 def _single(value: float) -> np.float32:

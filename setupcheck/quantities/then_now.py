@@ -130,7 +130,7 @@ def _outline(figure: Figure) -> tuple[object, ...]:
     )
 
 
-def then(plan: Plan, stack: Stack, now: Result | None) -> Result | None:
+def then(plan: Plan, stack: Stack, now: Result | None, draws: Draws) -> Result | None:
     """The requirement as the plan had it; None where no measured value reaches it, or where the plan could not tell it.
 
     Worst, rss and likely by the same rules as now.  Source: as quantities.judged.combined.
@@ -141,6 +141,8 @@ def then(plan: Plan, stack: Stack, now: Result | None) -> Result | None:
         return None
     if isinstance(made, Open) or (now is not None and _outline(made.figure) == _outline(now.figure)):
         return None
+    if now is not None:
+        plan.draws.take_over(draws, made.figure, now.figure)
     return combine_stack(made, stack, plan.floor, plan.draws)
 
 
@@ -196,7 +198,7 @@ THEN_NOW = (
         "",
         0,
         then,
-        {"plan": "then.plan", "stack": ":", "now": "settled stack.combined"},
+        {"plan": "then.plan", "stack": ":", "now": "settled stack.combined", "draws": "route.draws"},
         "the requirement as planned, where a measured value reaches it",
         {"now": None},
     ),

@@ -14,6 +14,7 @@ from setupcheck.quantities.judged import Result
 from setupcheck.quantities.then_now import as_planned
 from setupcheck.report.json import as_json
 from setupcheck.report.text import as_text
+from setupcheck.shipped import shipped
 from tests.jobs.test_measuring import changed
 
 HELD = "centre: {on: hub, by: spigot, clearance: [2 um, 8 um], rests: pushed, runout: 3 um}"
@@ -141,3 +142,13 @@ def test_what_is_measured_is_not_named_as_what_to_measure_next() -> None:
     said = block(AS_MEASURED).partition("where it pays most:")[2]
     assert "run-out of hub in four-jaw chuck" not in said
     assert "clearance of hub in spigot" in said
+
+
+def test_what_was_drawn_for_now_and_taken_over_for_then_is_what_then_draws_by_itself() -> None:
+    text = shipped("jobs/rotator-worm-wheel.yaml").read_text(encoding="utf-8")
+    dial = "{at_most: 6 um, measured: 4 um, uncertainty: 1 um}"
+    assert text.count(dial) == 1
+    then, plan = then_of(judged(text)), judged(text.replace(dial, "6 um"))
+    assert {"cumulative-pitch", "index-within", "run-out", "backlash"} <= {key.partition(".")[0] for key in then}
+    for key, result in then.items():
+        assert numbers(result) == numbers(plan.results[key]), key
