@@ -143,8 +143,12 @@ def _of_the_device(found: _Errors, divide: Divide, worm_ratio: int | None) -> No
     found.each("sighting", divide.sighting, "sighting")
     if divide.polygon_tilt:
         found.wave("tilt of the polygon", ways.tilted_axis_wave(divide.polygon_tilt), 2, "polygon_tilt")
-    if divide.step and divide.by != "x-y":
-        found.rounding = rounded_settings(found.pattern.count, divide.step)
+    step = divide.step
+    if divide.by == "hole-circle" and divide.circle and worm_ratio:
+        step = math.tau / (worm_ratio * divide.circle)  # of the work, from hole to hole; all zero where the circle fits
+    if step and divide.by != "x-y":
+        rounding = rounded_settings(found.pattern.count, step)
+        found.rounding = rounding if any(rounding) else ()
 
 
 def _of_the_sight(found: _Errors, divide: Divide) -> None:

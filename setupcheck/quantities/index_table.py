@@ -199,9 +199,13 @@ def table_off(table: IndexTable) -> float | None:
 def table_range(table: IndexTable) -> float | None:
     """Range of what rounding leaves over all places [rad]; None where nothing is rounded. Source: exact fractions.
 
+    None as well for notches, teeth and sides that the count does not divide: of them DIVIDE-008 speaks.
+
     It stands for each figure of the division, and is never less than what rounding does to that figure.
     """
-    return math.tau * float(tables.off_range(table.lines)) if not table.exact else None
+    if table.exact or table.kind == "positions":
+        return None
+    return math.tau * float(tables.off_range(table.lines))
 
 
 def table_limit(floor: Floor, table: IndexTable) -> float | None:
