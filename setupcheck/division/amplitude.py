@@ -22,6 +22,7 @@ from setupcheck.record import record
 Reals = NDArray[np.floating]
 
 LEVEL = 0.95
+"""Of all intervals of a division test. Common practice."""
 _Z = 1.959963984540054
 """97.5 % point of the normal distribution; textbook."""
 _NODES, _WEIGHTS = np.polynomial.hermite_e.hermegauss(15)

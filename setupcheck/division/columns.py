@@ -10,7 +10,7 @@ from setupcheck import notation
 from setupcheck.errors import SetupcheckError
 from setupcheck.notation import NotationError, nearest, quoted
 
-ARCSEC = math.pi / 648_000.0
+ARCSEC = math.pi / 648_000.0  # rad
 UNITS = {"deg": math.pi / 180.0, "gon": math.pi / 200.0, "dms": math.pi / 180.0, "arcsec": ARCSEC}
 STATIONS = ("angle", "turned")
 STATION_COLUMNS = (*(f"{kind}_{unit}" for kind in STATIONS for unit in ("deg", "gon", "dms")), "tooth")
@@ -84,7 +84,8 @@ def _number(text: str, called: str, example: str) -> float:
     raise BadCell(f"{quoted(text)} is not {called}. Write it as in {example}")
 
 
-def _is_number(text: str) -> bool:
+def is_number(text: str) -> bool:
+    """Whether a cell holds a plain number."""
     try:
         float(text)
     except ValueError:
@@ -111,7 +112,7 @@ def _angle(unit: str) -> Cell:
 
 def _spelt(text: str, unit: str, called: str, example: str) -> float:
     """A cell that carries a unit of its own, which must be the column's; anything else is told."""
-    if re.fullmatch(r"[^A-Za-z°'\"]*", text) or text[:1] in ("=", "@") or _is_number(text):
+    if re.fullmatch(r"[^A-Za-z°'\"]*", text) or text[:1] in ("=", "@") or is_number(text):
         value = _number(text, called, example)
         raise BadCell(f"{quoted(text)} is {abs(value):.6g}, more than a hundred turns. Check the number and its unit")
     try:

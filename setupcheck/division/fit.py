@@ -23,6 +23,7 @@ Reals = NDArray[np.floating]
 POOL = 0.25
 """Two mean squares are pooled where a larger ratio would come by chance more often than this. Common practice, from memory."""
 SURE = 0.01
+"""Chance below which what shows in the readings counts as there. Common practice, from memory."""
 
 
 @record(eq=False)

@@ -20,6 +20,7 @@ from setupcheck.division.columns import (
     VALUE_COLUMNS,
     BadCell,
     column_name,
+    is_number,
     reader,
     refuse_formula,
     unknown_column,
@@ -35,9 +36,11 @@ if TYPE_CHECKING:
 MOST_ROWS = 2_000_000
 """Rows of one file. Our choice: 2 million took 0.4 GB and half a minute of one processor here."""
 MOST_RUNS = 200
+"""Runs of one file, each with a zero of its own in the fit. Our choice."""
 MOST_PROBLEMS = 10
 """Wrong cells told of one file before reading stops. Our choice."""
 LONGEST_LINE = 10_000
+"""Characters of a line: far above any row of readings. Our choice."""
 EMPTY = ("", "-", "--", "n/a", "na", "none")
 """How a station that was not read may stand in its cell. Our choice."""
 MAY_BE_EMPTY = ("direction", "face")
@@ -161,7 +164,7 @@ def _named(names: list[str], place: str) -> list[str]:
     """The names, checked.  Raises: SetupcheckError."""
     while names and not names[-1]:
         names = names[:-1]  # separators a spreadsheet leaves at the end
-    if not names or (not set(names) & set(KNOWN) and any(name in EMPTY or _is_number(name) for name in names)):
+    if not names or (not set(names) & set(KNOWN) and any(name in EMPTY or is_number(name) for name in names)):
         raise SetupcheckError(f"{place}: the first line has no names of columns. Write them above, as in {_EXAMPLE}")
     for name, times in Counter(names).items():
         if not name:
@@ -177,14 +180,6 @@ def _named(names: list[str], place: str) -> list[str]:
         if len(found) > 1:
             raise SetupcheckError(f"{place}: {' and '.join(found)} both give the {what}. Keep one of them")
     return names
-
-
-def _is_number(text: str) -> bool:
-    try:
-        float(text)
-    except ValueError:
-        return False
-    return True
 
 
 class _Table:

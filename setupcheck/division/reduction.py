@@ -12,13 +12,14 @@ from numpy.typing import NDArray
 from setupcheck.division import doubts
 from setupcheck.division.amplitude import Length, length_of, t_at
 from setupcheck.division.columns import ARCSEC
-from setupcheck.division.design import Design, Term, columns, comes_round, design, places
+from setupcheck.division.design import Design, Term, comes_round, design
 from setupcheck.division.eccentric import Wheel, apart, eccentric
 from setupcheck.division.fit import SURE, Fit, Scatter, fitted, scatter_of
 from setupcheck.division.points import Points, Prepared, gap_of, prepare, without
 from setupcheck.division.readings import Readings
 from setupcheck.division.repeatability import repeatability, sighting
 from setupcheck.division.results import Flag, Flanks, Interval, Reduced, Unseen, Wave
+from setupcheck.division.stations import closure, per_mean, places_read, range_of
 from setupcheck.errors import SetupcheckError
 from setupcheck.record import record
 
@@ -111,7 +112,7 @@ def reduce(
         limits=(*ready.limits, *_limits(found)),
         rows=len(readings),
         stations=found.plan.stations,
-        places=_places(found.points, count),
+        places=places_read(found.points, count),
         runs=len(readings.runs),
         waves=waves,
         unseen=unseen,
@@ -123,11 +124,11 @@ def reduce(
         else _root(found.fit.square / found.fit.nu if found.fit.nu else math.nan),
         nu=found.scatter.repeat_nu if found.scatter.repeat_nu >= 3 else found.fit.nu,
         stations_scatter=found.scatter.stations,
-        range=_range(found),
-        per_mean=_per_mean(found.points),
-        range_without_first=_range(found, centred=True) if Term("wave", 1.0) in found.fit.terms else None,
+        range=range_of(found.points, found.fit),
+        per_mean=per_mean(found.points),
+        range_without_first=range_of(found.points, found.fit, centred=True) if Term("wave", 1.0) in found.fit.terms else None,
         drift=_single(found, Term("drift")),
-        closure=_closure(found.points, whole=comes_round(names)),
+        closure=closure(found.points, whole=comes_round(names)),
         reversal=_single(found, Term("reversal")),
         no_reversal=_no_reversal(found.plan),
         repeatability=repeatability(ready.points, _zeros(found) if readings.how == "reading" else None),
@@ -281,13 +282,6 @@ def _flanks(found: _Found, turned: bool, grows: int) -> Flanks | None:
     return Flanks((a, b, c, d), tuple(tuple(map(float, row)) for row in covariance))
 
 
-def _places(points: Points, count: int) -> int:
-    """Stations that are whole pitches apart from the first: different teeth, not places within a pitch."""
-    pitches = (points.theta - points.theta[0]) * count / math.tau
-    whole = np.round(pitches)
-    return len(np.unique(np.remainder(whole[np.abs(pitches - whole) < 0.01], count)))
-
-
 def _sag_on(found: _Found, term: Term) -> float:
     """What a bend of the size of the drift would add to a wave [rad]."""
     if found.sag <= 0.0:
@@ -341,45 +335,6 @@ def _no_reversal(plan: Design) -> str:
         "where the instrument was not set anew between them",
         "fitted": "",
     }[plan.reversal]
-
-
-def _closure(points: Points, *, whole: bool) -> float | None:
-    """Last less first reading of the station that begins, in one run and direction where it can be."""
-    order = np.argsort(points.t, kind="stable")
-    first = order[0]
-    at = places(points, whole=whole)
-    same = np.abs(at - at[first]) < 2e-8
-    same &= points.run == points.run[first]
-    for more in (points.direction == points.direction[first], np.ones(len(points), bool)):
-        again = [i for i in order.tolist() if same[i] and more[i]]
-        if len(again) > 1:
-            return float(points.y[again[-1]] - points.y[first])
-    return None
-
-
-def _range(found: _Found, *, centred: bool = False) -> float:
-    """Largest less smallest mean of a station, zeros and drift off, the larger of both directions [rad].
-
-    centred  the first wave taken off as well, of both flanks where both were read
-    """
-    p, worst = found.points, 0.0
-    rest = np.array(p.y)
-    for term in found.fit.terms:
-        first = term.kind in ("wave", "swing") and term.harmonic == 1.0
-        if term.kind in ("zero", "drift", "bend") or (centred and first):
-            rest -= np.asarray(found.fit.vector(term)) @ np.asarray(columns(term, p, slice(None)))
-    for direction in np.unique(p.direction):
-        mine = p.direction == direction
-        _, at = np.unique(places(p, whole=True)[mine], return_inverse=True)
-        means = np.bincount(at, rest[mine]) / np.bincount(at)
-        worst = max(worst, float(means.max() - means.min()))
-    return worst
-
-
-def _per_mean(points: Points) -> int:
-    """Fewest readings that the mean of a station in one direction rests on."""
-    at = np.stack([places(points, whole=True), points.direction], axis=1)
-    return int(np.unique(at, axis=0, return_counts=True)[1].min())
 
 
 def warnings(unseen: Sequence[Unseen]) -> list[str]:

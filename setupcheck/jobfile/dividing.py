@@ -2,7 +2,7 @@
 
 # Annotations are evaluated as they stand (no __future__ import): pydantic would have to compile each of them from its text.
 from collections.abc import Mapping
-from typing import Annotated, Literal, Self
+from typing import Annotated, Literal, Self, get_args
 
 from pydantic import Field, ValidationInfo, model_validator
 
@@ -22,17 +22,7 @@ Way = Literal[
     "rotary-table",
 ]
 
-_ANGULAR = (
-    "hole-circle",
-    "direct",
-    "vernier",
-    "readout",
-    "theodolite",
-    "polygon",
-    "face-teeth",
-    "sine-bar",
-    "rotary-table",
-)
+_ANGULAR = tuple(way for way in get_args(Way) if way != "x-y")
 _PLACED = ("direct", "face-teeth")
 
 WAYS_OF: Mapping[str, tuple[str, ...]] = {

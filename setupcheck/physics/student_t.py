@@ -20,7 +20,7 @@ MOST_TERMS = 5000
 """Terms of a series or fraction before it is given up. Our screening choice: nu 1e5 takes some hundred."""
 LARGEST_NU = 1e5
 """Largest degrees of freedom. Our screening choice: nobody takes more readings, and the sums stay short."""
-_TINY = 1e-300
+_TINY = 1e-300  # keeps a fraction from a division by zero; our choice
 _ENOUGH = 1e-15  # relative; binary fractions carry no more
 
 

@@ -22,7 +22,7 @@ from setupcheck.ledger.route import State
 from setupcheck.notation import NotationError, length
 from setupcheck.physics.materials import Range
 from setupcheck.quantities import growing, pairing, strength
-from setupcheck.quantities.book import Open, OutOfRange
+from setupcheck.quantities.book import Open, OutOfRange, all_missing
 from setupcheck.quantities.causes import Entry, length_error, size_error
 from setupcheck.quantities.cutter_shape import insert_width, tilt_of
 from setupcheck.quantities.drive import Drive, WheelCut, drive, wheel_cut
@@ -68,7 +68,7 @@ def backlash(floor: Floor, stack: Stack) -> Built | Open:
         return Open(because="backlash is computed for a wheel cut by a single point")
     opened = [x for x in (found, both, made) if isinstance(x, Open)]
     if opened or not isinstance(found, Drive) or isinstance(both, Open) or not isinstance(made, WheelCut):
-        return _merged(opened)
+        return all_missing(*opened)
     factor = along_of(floor, stack, found)
     g, r = both
     served = _served(floor, found)
@@ -77,18 +77,13 @@ def backlash(floor: Floor, stack: Stack) -> Built | Open:
     grown = _growth(floor, found)
     opened = [x for x in (gap, depth, mesh, grown, served) if isinstance(x, Open)]
     if opened:
-        return _merged(opened)
+        return all_missing(*opened)
     assert isinstance(gap, Account) and isinstance(depth, Account) and isinstance(mesh, Account)
     assert isinstance(grown, Account) and isinstance(served, Served)
     strain = grown * (1.0 / found.wheel_diameter) + served.strain
     total = gap + mesh + served.moved - _misfit(made, depth, strain)
     figure = OverATurn(total * factor, g.offset - r.axis_at(g.z), slope * factor, g.pattern)
     return Built(figure, second_order(lean=g.lean - r.lean, lever=abs(g.z - r.z)))
-
-
-def _merged(opened: list[Open]) -> Open:
-    missing = tuple(dict.fromkeys(m for x in opened for m in x.missing))
-    return Open(missing, "; ".join(dict.fromkeys(x.because for x in opened if x.because)))
 
 
 def along_of(floor: Floor, stack: Stack, found: Drive) -> float:
@@ -150,7 +145,7 @@ def gap_as_made(floor: Floor, cut: WheelCut, teeth: State) -> Account | Open:
     gap, depth, grown = _gap(floor, cut), depth_of_cut(floor, cut, teeth), _growth(floor, found)
     opened = [x for x in (gap, depth, grown) if isinstance(x, Open)]
     if opened:
-        return _merged(opened)
+        return all_missing(*opened)
     assert isinstance(gap, Account) and isinstance(depth, Account) and isinstance(grown, Account)
     slope = 2.0 * math.tan(found.pressure_angle)
     return gap + depth * slope - grown * (slope / 2.0 - found.thread / found.wheel_diameter)
@@ -288,7 +283,7 @@ def growth(floor: Floor, join: Join, op: int) -> Span | Open:
     lost = pairing.smoothed(floor, join, joint) if isinstance(joint, pairing.Pair) else None
     opened = [x for x in (joint, served, lost) if isinstance(x, Open)]
     if opened:
-        return _merged(opened)
+        return all_missing(*opened)
     if not isinstance(joint, pairing.Pair) or not isinstance(lost, float) or isinstance(served, Open):
         return Span(0.0, 0.0)
     try:
@@ -325,7 +320,7 @@ def _served(floor: Floor, found: Drive) -> Served | Open:
     house, screw = expansion_of(mesh.housing, "mesh.housing"), expansion_of(worm.material, "worm.material")
     opened = [x for x in (house, screw) if isinstance(x, Open)]
     if opened or isinstance(house, Open) or isinstance(screw, Open):
-        return _merged(opened)
+        return all_missing(*opened)
     each = [
         (t - REFERENCE, h, w, s)
         for t in (*served, REFERENCE)

@@ -190,7 +190,7 @@ class Book:
                 values[argument] = answer.value
                 rests_on |= answer.rests_on
         if opens:
-            return _all_missing(opens)
+            return all_missing(*opens)
         try:
             made = quantity.of(**values)
         except OutOfRange as why:
@@ -221,12 +221,13 @@ def _together(parts: Sequence[Answer]) -> Known | Open:
     """All parts known: a tuple of their values; otherwise everything that is missing."""
     opens = [p for p in parts if isinstance(p, Open)]
     if opens:
-        return _all_missing(opens)
+        return all_missing(*opens)
     known = [p for p in parts if isinstance(p, Known)]
     return Known(tuple(p.value for p in known), frozenset().union(*(p.rests_on for p in known)))
 
 
-def _all_missing(opens: Sequence[Open]) -> Open:
-    """What any of them lacks, each thing once."""
+def all_missing(*parts: object) -> Open:
+    """What any of them lacks, each thing once; what is not open lacks nothing."""
+    opens = [part for part in parts if isinstance(part, Open)]
     missing = tuple(dict.fromkeys(m for o in opens for m in o.missing))
     return Open(missing, "; ".join(dict.fromkeys(o.because for o in opens if o.because)))

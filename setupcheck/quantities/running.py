@@ -15,7 +15,7 @@ from setupcheck.ledger.route import State
 from setupcheck.ledger.running import AsItRuns
 from setupcheck.quantities import contact, cutter_shape, exact_gap, insert_measured
 from setupcheck.quantities.backlash import depth_of_cut
-from setupcheck.quantities.book import Open, OutOfRange
+from setupcheck.quantities.book import Open, OutOfRange, all_missing
 from setupcheck.quantities.contact import Drill, Made, Points, run
 from setupcheck.quantities.drive import Drive, WheelCut, drive, wheel_cut
 from setupcheck.quantities.head_setting import where_it_works
@@ -70,20 +70,13 @@ def _planned(floor: Floor) -> Planned | Open | None:
         return cut
     pair, blank, kind = exact_gap.pair(ASKED, cut, floor), exact_gap.blank(ASKED, cut, floor), cutter_shape.insert(cut)
     if isinstance(blank, Open) or isinstance(kind, Open):
-        return _merged(blank, kind)
+        return all_missing(blank, kind)
     made_for, setting = exact_gap.made_for(pair, cut), exact_gap.setting(pair, cut, floor)
     drill = contact.drill(pair, blank, made_for, contact.film(ASKED, floor))
     made = insert_measured.made(cut, kind, drill, made_for, insert_measured.measured(ASKED, cut), floor)
     if isinstance(setting, Open) or isinstance(made, Open):
-        return _merged(setting, made)
+        return all_missing(setting, made)
     return Planned(cut, drill, made_for, setting, made)
-
-
-def _merged(*parts: object) -> Open:
-    """What any of them lacks."""
-    opened = [x for x in parts if isinstance(x, Open)]
-    missing = tuple(dict.fromkeys(m for x in opened for m in x.missing))
-    return Open(missing, "; ".join(dict.fromkeys(x.because for x in opened if x.because)))
 
 
 def _running(floor: Floor, ring: Tooth, teeth: State, planned: Planned) -> AsItRuns | Open:
@@ -95,7 +88,7 @@ def _running(floor: Floor, ring: Tooth, teeth: State, planned: Planned) -> AsItR
         insert_turned(floor, cut),
     )
     if isinstance(tilt, Open) or isinstance(plane, Open) or isinstance(depth, Open) or isinstance(turned, Open):
-        return _merged(tilt, plane, depth, turned)
+        return all_missing(tilt, plane, depth, turned)
     settings: dict[str, list[Figure]] = {
         "tilt": tilt,
         "offset": [plane],
@@ -153,7 +146,7 @@ def _tilt(floor: Floor, cut: WheelCut) -> list[Figure] | Open:
         *(() if mesh.shaft_angle_error is not None else ("mesh.shaft_angle_error",)),
     )
     if isinstance(works, Open) or missing:
-        return _merged(Open(missing), works)
+        return all_missing(Open(missing), works)
     assert head is not None and mesh.shaft_angle_error is not None
     setting = Cause(
         f"op {cut.op}, setting of the tilt",
@@ -179,7 +172,7 @@ def _depth(floor: Floor, cut: WheelCut, teeth: State) -> Account | Open:
     """What the depth may be off, an early touch of the throat's corners included. Source: quantities.backlash."""
     account, early = depth_of_cut(floor, cut, teeth), cutter_shape.early_touch(cut, floor)
     if isinstance(account, Open) or isinstance(early, Open):
-        return _merged(account, early)
+        return all_missing(account, early)
     missing = account.undetermined()
     return Open(missing) if missing else account.plus_constant(-(early or 0.0))
 
@@ -226,7 +219,7 @@ def _lean_of_stop(floor: Floor, cut: WheelCut) -> float | Open:
     missing = tuple(f"{cut.cutter_path}.grinding.{key}" for key in keys if getattr(told, key) is None)
     pair, blank, kind = exact_gap.pair(ASKED, cut, floor), exact_gap.blank(ASKED, cut, floor), cutter_shape.insert(cut)
     if isinstance(blank, Open) or isinstance(kind, Open) or missing:
-        return _merged(Open(missing), blank, kind)
+        return all_missing(Open(missing), blank, kind)
     made_for = exact_gap.made_for(pair, cut)
     gap = wide_gap(exact_gap.gap(pair, blank), made_for, kind, cut)
     if isinstance(gap, Open):

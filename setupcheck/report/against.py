@@ -15,6 +15,7 @@ from setupcheck.report.wording import finer, title_of, wrap
 from setupcheck.rulebook.judging import judge
 
 OWNERS_SHOWN = 3
+"""Likely owners of a wave that the text names. Our choice."""
 
 
 def verdict(found: ReadBack) -> str:

@@ -21,6 +21,7 @@ __all__ = ["as_data", "as_json", "as_text", "template"]
 
 FORMAT = 1
 FLAGS_SHOWN = 10
+"""Readings far off that the text lists. Our choice."""
 WORDS = {
     "eccentric": "both flanks differ as those of an eccentric ring do",
     "division": "both flanks show the same: it comes from dividing, not from teeth off their axis",

@@ -21,6 +21,7 @@ MOST_CURVES = 8
 LINES = ("", "4 1.2", "1.2 1.2", "6 1.2 1.2 1.2", "2.5 2.5", "8 2", "4 1 1 1 1 1", "0.5 1.5")
 """Dashes of the curves [mm of paper], one kind for each. Our choice."""
 SMALL = 2.6
+"""Height of the small letters [mm of paper]. Our choice."""
 KEY_HEIGHT = 12.5
 """Height that each curve's words take [mm]. Our choice."""
 CURVE, LIMIT_LINE = 0.35, 0.9

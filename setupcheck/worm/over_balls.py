@@ -76,6 +76,20 @@ class _Gap:
         return None
 
 
+def _gap_of(
+    starts: int, axial_module: float, teeth: int, pitch_diameter: float, pressure_angle: float, *, half: float
+) -> _Gap:
+    """The gap of a wheel whose sizes are above zero.  Raises: ValueError for a pressure angle that is none."""
+    steep_enough(pressure_angle=pressure_angle)
+    return _Gap(
+        p=starts * axial_module / 2.0,
+        wheel_radius=teeth * axial_module / 2.0,
+        worm_radius=pitch_diameter / 2.0,
+        slope=math.tan(pressure_angle),
+        half=half,
+    )
+
+
 @record
 class OverBalls:
     """A worm wheel over two balls: size M, the diameter of the wheel where a ball touches, and how far off the mid-plane."""
@@ -111,14 +125,7 @@ def over_balls(
     (105.654, 99.95, 0.17)
     """
     above_zero(starts=starts, axial_module=axial_module, teeth=teeth, pitch_diameter=pitch_diameter, gap=gap, ball=ball)
-    steep_enough(pressure_angle=pressure_angle)
-    at = _Gap(
-        p=starts * axial_module / 2.0,
-        wheel_radius=teeth * axial_module / 2.0,
-        worm_radius=pitch_diameter / 2.0,
-        slope=math.tan(pressure_angle),
-        half=gap / 2.0,
-    )
+    at = _gap_of(starts, axial_module, teeth, pitch_diameter, pressure_angle, half=gap / 2.0)
 
     def seated(y: float, z: float) -> tuple[float, float]:
         angle, _, height = at.centre(y, z, ball / 2.0)
@@ -175,14 +182,7 @@ def gap_over_balls(
     above_zero(
         size=size, starts=starts, axial_module=axial_module, teeth=teeth, pitch_diameter=pitch_diameter, ball=ball
     )
-    steep_enough(pressure_angle=pressure_angle)
-    at = _Gap(
-        p=starts * axial_module / 2.0,
-        wheel_radius=teeth * axial_module / 2.0,
-        worm_radius=pitch_diameter / 2.0,
-        slope=math.tan(pressure_angle),
-        half=0.0,
-    )
+    at = _gap_of(starts, axial_module, teeth, pitch_diameter, pressure_angle, half=0.0)
     centre = (size - ball) / 2.0 / _opposite(teeth)
 
     def high_enough(y: float, z: float) -> tuple[float, float]:

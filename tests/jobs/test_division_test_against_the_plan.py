@@ -127,7 +127,6 @@ OWNERS = {"eccentric": "op 40, holding", "divided": "op 40, dividing"}
 def test_both_flanks_tell_a_holding_from_a_division(tmp_path: Path, truth: str) -> None:
     """Twenty wheels, each with one setup out of hand and the other as planned, at random angles: all are named right."""
     right = 0
-    assert truth in OWNERS
     for seed in range(20):
         rng = random.Random(100 + seed)
         small, large = rng.uniform(0.0, 0.002), rng.uniform(0.030, 0.040)
