@@ -10,6 +10,9 @@ Point = tuple[float, float]
 THICK, THIN = 0.25, 0.13
 """Line widths [mm]: outlines, dimensions. Source: ISO 128 has 0.25 and 0.13 as a pair (from memory)."""
 
+FONT = "DejaVu Sans, Arial, sans-serif"
+"""Said once, at the root: every text inherits it."""
+
 CHARACTER = 0.62
 """Width of a character over the size of the text, for room: a little more than a sans-serif's mean. Measured on DejaVu Sans."""
 
@@ -66,10 +69,8 @@ def words(at: Point, text: str, *, size: float = 3.0, anchor: str = "start", bol
         escape(text),
         x=at[0],
         y=at[1],
-        font_family="DejaVu Sans, Arial, sans-serif",
         font_size=size,
-        text_anchor=anchor,
-        fill="black",
+        **({"text_anchor": anchor} if anchor != "start" else {}),
         **more,
     )
 
@@ -94,4 +95,5 @@ def picture(width: float, height: float, *, title: str, parts: Sequence[str]) ->
         width=f"{number(width)}mm",
         height=f"{number(height)}mm",
         viewBox=f"0 0 {number(width)} {number(height)}",
+        font_family=FONT,
     )

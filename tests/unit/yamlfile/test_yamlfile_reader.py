@@ -1,6 +1,7 @@
 """YAML text to data with places, and everything of YAML that a job does not need."""
 
 import contextlib
+import re
 
 import pytest
 import yaml
@@ -386,6 +387,7 @@ def test_what_older_readers_took_for_something_else_gets_a_hint(text, hint):
 
 
 words = st.text(alphabet="abcdefghijklmnopqrstuvwxyz éü€😀-_,:#'\"[]{}&*!|>%@` 0123456789.", min_size=1, max_size=12)
+words = words.filter(lambda text: not re.fullmatch(r"[-+]\.\d+", text))  # a number to a shop, text to a YAML 1.1 writer
 names = st.from_regex(r"[a-z][a-z_]{0,8}", fullmatch=True)
 trees = st.recursive(
     words | st.integers(-(10**6), 10**6) | st.booleans() | st.none(),
