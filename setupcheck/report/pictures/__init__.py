@@ -11,7 +11,7 @@ if TYPE_CHECKING:
     from setupcheck.flow import ReadBack, Review
 
 WIDEST, TALLEST = 180.0, 240.0
-"""What goes between the edges of A4 and of letter paper alike [mm of paper]. Source: ISO 216, ANSI Y14.1 (from memory), less 15."""
+"""What goes between the edges of A4 and of letter paper alike [mm of paper]. From memory: 210 x 297 and 216 x 279."""
 
 
 @record(eq=False)

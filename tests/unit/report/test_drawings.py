@@ -48,7 +48,7 @@ def texts(svg: ElementTree.Element) -> list[tuple[str, Box]]:
     for node in svg.iter(f"{SVG}text"):
         size, x, y = (float(node.attrib[key]) for key in ("font-size", "x", "y"))
         wide = room(node.text or "", size)
-        start = x - wide * {"start": 0.0, "middle": 0.5, "end": 1.0}[node.attrib["text-anchor"]]
+        start = x - wide * {"start": 0.0, "middle": 0.5, "end": 1.0}[node.attrib.get("text-anchor", "start")]
         found.append((node.text or "", (start, y - 0.76 * size, start + wide, y + 0.22 * size)))
     return found
 
