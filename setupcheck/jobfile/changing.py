@@ -6,8 +6,12 @@ from collections.abc import Iterator, Sequence
 from contextlib import contextmanager
 from dataclasses import replace
 
+from pydantic import BaseModel
+
 from setupcheck.errors import JobError, Problem, SetupcheckError, printable
+from setupcheck.jobfile.models import Deviation, Dimension
 from setupcheck.jobfile.reading import LoadedJob, Loc, read_tree
+from setupcheck.jobfile.setups import Touched
 from setupcheck.notation import nearest, quoted
 from setupcheck.record import record
 from setupcheck.yamlfile import Data, Node, Place, Tree, parse
@@ -66,6 +70,7 @@ def read_change(text: str) -> Change:
 def changed(loaded: LoadedJob, changes: Sequence[Change]) -> LoadedJob:
     """The job with its entries replaced or added, all at once, and checked as if the file said so.
 
+    A key may go into a plain value that is short for a map: `runout.measured` keeps the `10 um` that stood there as `at_most`.
     Places of what is new are those of what stood there, so that messages point at the file.
     Raises: JobError for a path or a value that cannot be, each problem saying that it comes from --set.
     """
@@ -83,7 +88,7 @@ def changed(loaded: LoadedJob, changes: Sequence[Change]) -> LoadedJob:
                 raise _refused(loaded, change, tree.place(loc), how, "Set it once")
         ways.append((loc, change))
     for loc, change in ways:
-        tree = _put(tree, loc, _value(change))
+        tree = _put(_opened(loaded, tree, loc), loc, _value(change))
     with from_set(changes):
         return replace(read_tree(tree, loaded.sha256), file=loaded.file)
 
@@ -114,23 +119,27 @@ def _value(change: Change) -> Data:
 
 
 def _way(loaded: LoadedJob, change: Change) -> Loc:
-    """The way to an entry; all of it is in the file but the last step, which may be new.
+    """The way to an entry. Its last step may be new, and steps before it where the entries around them know such a key.
 
     Raises: JobError with the names that are known where the path leaves the file.
     """
     loc = loaded.loc(change.key)
     node: Data = loaded.tree.data
+    around_it: object = loaded.job
     for at, step in enumerate(loc):
+        stands, around_it = around_it, _inner(around_it, step)
         last = at == len(loc) - 1
         place = loaded.tree.place(loc[:at])
         around = loaded.tree.dotted(loc[:at]) or "the job file"
         if isinstance(node, dict) and isinstance(step, str):
             if step in node:
                 node = node[step]
-            elif last:
+            elif last or step in _keys(stands):
                 node = None
+                if not last:
+                    break  # what follows is new altogether, and the reader knows its keys
             else:
-                raise _refused(loaded, change, place, f"{quoted(step)} is not in {around}", _offer(step, node))
+                raise _refused(loaded, change, place, f"{quoted(step)} is not in {around}", _offer(step, node, stands))
         elif isinstance(node, list):
             if isinstance(step, int) and 0 <= step < len(node):
                 node = node[step]
@@ -138,6 +147,8 @@ def _way(loaded: LoadedJob, change: Change) -> Loc:
                 raise _refused(loaded, change, place, f"{around} has no such entry", _entries(node, around))
         elif node is None and last and isinstance(step, str):
             pass  # `bore:` with nothing behind it takes its first key
+        elif isinstance(step, str) and (plain := _as_map(stands)):
+            node = plain.get(step)
         else:
             said = f"{around} has no keys inside: it says {quoted(node) if node is not None else 'nothing'}"
             raise _refused(loaded, change, place, said, f"Set it as a whole: --set '{around}={{{step}: …}}'")
@@ -146,8 +157,53 @@ def _way(loaded: LoadedJob, change: Change) -> Loc:
     return loc
 
 
-def _offer(step: str, node: dict[str, Data]) -> str:
-    near = nearest(step, node)
+def _opened(loaded: LoadedJob, tree: Tree, loc: Loc) -> Tree:
+    """The tree with the plain value that a way leads into, if there is one, written as the map it is short for."""
+    record: object = loaded.job
+    node: Data = tree.data
+    for at, step in enumerate(loc):
+        if isinstance(node, dict) and isinstance(step, str):
+            node = node.get(step)
+        elif isinstance(node, list) and isinstance(step, int) and step < len(node):
+            node = node[step]
+        else:
+            plain = isinstance(node, str | int | float)
+            return _put(tree, loc[:at], _as_map(record)) if plain else tree
+        record = _inner(record, step)
+    return tree
+
+
+def _inner(record: object, step: str | int) -> object:
+    """What a step of a way leads to among the records of the job; None where nothing is."""
+    if isinstance(record, BaseModel):
+        return next((getattr(record, n) for n, f in type(record).model_fields.items() if step in (n, f.alias)), None)
+    if isinstance(record, dict):
+        return record.get(step)
+    return record[step] if isinstance(record, tuple) and isinstance(step, int) and step < len(record) else None
+
+
+def _keys(record: object) -> set[str]:
+    """Every key that an entry may have; none of what is not one of the job's own maps."""
+    return {f.alias or n for n, f in type(record).model_fields.items()} if isinstance(record, BaseModel) else set()
+
+
+def _as_map(record: object) -> dict[str, Data]:
+    """What a plain value is short for: a bound is an `at_most`, `32 H6` a nominal size with a fit, a name a surface."""
+    if isinstance(record, Deviation) and record.at_most is not None:
+        return {"at_most": _mm(record.at_most)}
+    if isinstance(record, Dimension) and record.nominal is not None:
+        sizes = {"nominal": record.nominal, "lower": record.lower, "upper": record.upper}
+        shown: dict[str, Data] = {key: _mm(size) for key, size in sizes.items() if size is not None}
+        return {**shown, "fit": record.fit} if record.fit else shown
+    return {"surface": record.surface} if isinstance(record, Touched) else {}
+
+
+def _mm(size: float) -> str:
+    return f"{size!r} mm"
+
+
+def _offer(step: str, node: dict[str, Data], record: object) -> str:
+    near = nearest(step, [*node, *sorted(_keys(record) - node.keys())])
     if near is not None:
         return f"Did you mean {near}?"
     known = list(node)

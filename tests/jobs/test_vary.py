@@ -57,6 +57,18 @@ def told(found: Review) -> dict[str, object]:
         ("setups.40.divide={by: hole-circle, circle: 18}", HEAD, "divide: {by: hole-circle, circle: 18}"),
         ('setups.40.divide.wheel.once_per_turn=±40"', 'once_per_turn: ±10"', 'once_per_turn: ±40"'),
         ("parts.wheel.surfaces.bore.diameter=32 H7", "kind: bore, diameter: 32 H5", "kind: bore, diameter: 32 H7"),
+        # a key inside a value that is short for a map
+        ("setups.40.hold.centre.runout.measured=2 um", "rests: pushed, runout: 3 um",
+         "rests: pushed, runout: {at_most: 3 um, measured: 2 um}"),
+        ("setups.30.hold.stop.error.measured=-5 um", "stop:   {on: back, error: 20 um}",
+         "stop:   {on: back, error: {at_most: 20 um, measured: -5 um}}"),
+        ("parts.wheel.surfaces.bore.diameter.measured=32.005", "kind: bore, diameter: 32 H5",
+         "kind: bore, diameter: {nominal: 32, fit: H5, measured: 32.005}"),
+        ("setups.70.join.stop.spacers[1].length.measured=1.501", "length: 1.500 ±0.003",
+         "length: {nominal: 1.5, lower: -0.003, upper: 0.003, measured: 1.501}"),
+        # keys that are new where they are put
+        ("mesh.over_balls={measured: 111.266, ball: 2.5}", "housing: grey-iron",
+         "housing: grey-iron, over_balls: {measured: 111.266, ball: 2.5}"),
         # a key that is new where it is put
         ("setups.30.hold.centre.x=3 um", "at: 10, runout: 15 um}", "at: 10, runout: 15 um, x: 3 um}"),
     ],
@@ -216,6 +228,8 @@ def test_what_is_no_range_says_what_would_be(text: str, says: str) -> None:
     [
         ("setups.30.hold.centre.clerance=5 um", "'clerance' is not a key of this entry. Did you mean clearance?"),
         ("setups.30.hld.centre.runout=5 um", "'hld' is not in setups.30. Did you mean hold?"),
+        ("mesh.mrak.right.at=1 mm", "'mrak' is not in mesh. Did you mean mark?"),
+        ("mesh.mark.rihgt.at=1 mm", "'rihgt' is not a key of this entry. Did you mean right?"),
         ("setups.31.hold=5 um", "setups has no such entry. There: setups.10, setups.20, setups.30"),
         ("require[99].at_most=5 um", "require has no such entry. There: require[1] to require["),
         ("require[0].at_most=5 um", "require has no such entry"),
@@ -244,6 +258,27 @@ def test_what_cannot_be_set_says_so_and_names_what_could(text: str, says: str) -
     assert says in message
     assert "--set" in message
     assert "\x1b" not in message
+
+
+def test_keys_set_one_by_one_make_one_new_entry_and_a_short_value_is_opened_once() -> None:
+    found = vary(
+        shipped("jobs/rotator-worm-wheel.yaml"),
+        sets(
+            "mesh.mark.seen_from=wheel.front",
+            "mesh.mark.right.at=middle",
+            "mesh.mark.left.at=middle",
+            "setups.40.hold.centre.runout.measured=2 um",
+            "setups.40.hold.centre.runout.uncertainty=1 um",
+            "setups.40.hold.centre.runout.high_at=90 deg",
+        ),
+    )
+    job = found.after.loaded.job
+    assert job.mesh is not None
+    assert job.mesh.mark is not None
+    assert "wheel.front" == job.mesh.mark.seen_from
+    runout = job.setups[3].hold.centre.runout  # type: ignore[union-attr]
+    assert runout is not None
+    assert (0.003, 0.002, 0.001, "90 deg") == (runout.at_most, runout.measured, runout.uncertainty, runout.high_at)
 
 
 def test_a_wrong_value_is_shown_at_the_line_of_the_one_it_replaces() -> None:
