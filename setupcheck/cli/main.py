@@ -18,7 +18,19 @@ plugins.leave_out()
 
 import typer  # noqa: E402
 
-from setupcheck.cli import contact, index, insert, readings, record, review, rules, schema, vary, working  # noqa: E402
+from setupcheck.cli import (  # noqa: E402
+    contact,
+    index,
+    insert,
+    readings,
+    record,
+    review,
+    rules,
+    schema,
+    sheet,
+    vary,
+    working,
+)
 from setupcheck.errors import SetupcheckError  # noqa: E402
 
 app = typer.Typer(
@@ -39,6 +51,7 @@ app.command("record")(record.command)
 app.command("readings")(readings.command)
 app.command("vary")(vary.command)
 app.command("rules")(rules.command)
+app.command("sheet")(sheet.command)
 app.command("schema")(schema.command)
 
 

@@ -102,13 +102,42 @@ def as_csv(loaded: LoadedJob, book: Book, op: int | None = None) -> str:
     )
 
 
-def _head(book: Book, scope: Scope, table: IndexTable) -> Iterator[str]:
+@record
+class OnPaper:
+    """An index table as it goes on the sheet: title, what to know, heads, the cells of every line, and the closing line."""
+
+    title: str
+    notes: tuple[str, ...]
+    heads: tuple[str, ...]
+    rows: tuple[tuple[str, ...], ...]
+    closing: str
+
+
+def on_paper(book: Book, scope: Scope, table: IndexTable) -> OnPaper:
+    """The same table without a width."""
+    columns = [c for c in _columns(table, inches=book.inches) if c.width]
+    return OnPaper(
+        clean(_title(scope, table)),
+        tuple(clean(note) for note in _notes(book, scope, table)),
+        tuple(c.head for c in columns),
+        tuple(tuple(c.cell(line) for c in columns) for line in table.lines),
+        _closing(book, scope, table),
+    )
+
+
+def _title(scope: Scope, table: IndexTable) -> str:
     head = f", head {table.worm_ratio}:1" if table.worm_ratio else ""
     circle = f", circle of {table.circle} holes" if table.circle else ""
-    yield from wrap(
-        f"INDEX TABLE, op {scope.op}: {table.count} {table.what} of {table.ref} by {table.by}{head}{circle}", rest="  "
-    )
-    for said in (*_steps(book, scope, table), *_hands(table), _legend(table)):
+    return f"INDEX TABLE, op {scope.op}: {table.count} {table.what} of {table.ref} by {table.by}{head}{circle}"
+
+
+def _notes(book: Book, scope: Scope, table: IndexTable) -> Iterator[str]:
+    yield from (*_steps(book, scope, table), *_hands(table), _legend(table))
+
+
+def _head(book: Book, scope: Scope, table: IndexTable) -> Iterator[str]:
+    yield from wrap(_title(scope, table), rest="  ")
+    for said in _notes(book, scope, table):
         yield from wrap(said, first="  - ", rest="    ")
 
 

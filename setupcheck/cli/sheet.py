@@ -1,0 +1,57 @@
+"""`setupcheck sheet JOB -o FILE.html`: the job on paper, or one of its drawings."""
+
+# Annotations are evaluated as they stand (no __future__ import): typer would have to compile each of them from its text.
+
+import sys
+from pathlib import Path
+from typing import Annotated
+
+import typer
+
+from setupcheck.cli.review import day_of
+from setupcheck.cli.writing import refuse_place, write_whole
+from setupcheck.errors import SetupcheckError, printable
+
+
+def command(
+    job: Annotated[Path, typer.Argument(metavar="JOB", help="Job file (YAML).", show_default=False)],
+    out: Annotated[
+        Path, typer.Option("--out", "-o", help="File to write, HTML; with --drawing SVG.", show_default=False)
+    ],
+    drawing: Annotated[
+        str | None, typer.Option(help="Write this drawing alone, as in hold-30.", show_default=False)
+    ] = None,
+    force: Annotated[bool, typer.Option("--force", help="Replace a file that is already there.")] = False,
+    readings: Annotated[
+        Path | None, typer.Option(help="CSV of a division test, drawn beside the prediction.", show_default=False)
+    ] = None,
+    house: Annotated[Path | None, typer.Option(help="File of your shop's own limits.", show_default=False)] = None,
+    record: Annotated[
+        Path | None, typer.Option(help="CSV of what your shop's own devices gave.", show_default=False)
+    ] = None,
+    on: Annotated[str | None, typer.Option(help="Day of the review (2027-03-31).", show_default=False)] = None,
+) -> None:
+    """Write the setup sheet of a job: one file that prints on A4 and letter, a page for each operation.
+
+    Example: setupcheck sheet jobs/rotator-worm-wheel.yaml -o sheet.html
+    """
+    from setupcheck.flow import read_back, review
+
+    refuse_place(out, force=force)
+    found = review(job, house=house, on=day_of(on) if on is not None else None, devices=record)
+    read = read_back(found.loaded, readings) if readings is not None else None
+    if drawing is not None:
+        from setupcheck.report.pictures import pictures
+
+        drawn = pictures(found, read)
+        if drawing not in drawn:
+            raise SetupcheckError(
+                f"this job has no drawing '{printable(drawing)}'. It has {', '.join(drawn) or 'none'}"
+            )
+        text = drawn[drawing].draw()
+    else:
+        from setupcheck.report.sheet import as_sheet
+
+        text = as_sheet(found, read)
+    write_whole(out, text, force=force)
+    sys.stdout.write(f"written: {printable(str(out))}\nthe review says {found.verdict.upper()}\n")

@@ -1,0 +1,36 @@
+"""The sheet: everything of a job on paper, one page an operation. One HTML file, nothing in it runs or is fetched."""
+
+from __future__ import annotations
+
+from functools import cache
+from pathlib import Path
+from typing import TYPE_CHECKING
+
+from setupcheck.report.sheet.checks import OUTSIDE
+from setupcheck.report.sheet.pages import sheet_of
+
+if TYPE_CHECKING:
+    from jinja2 import Template
+
+    from setupcheck.flow import ReadBack, Review
+
+
+def as_sheet(found: Review, read: ReadBack | None = None) -> str:
+    """The sheet of a reviewed job as HTML, ending in a newline.
+
+    read  a division test read back, drawn beside the prediction
+    """
+    told = _template().render(sheet=sheet_of(found, read), outside=OUTSIDE)
+    return "\n".join(line for line in (line.rstrip() for line in told.splitlines()) if line) + "\n"
+
+
+@cache
+def _template() -> Template:
+    """Text of the job reaches the page through autoescape alone; drawings escape what they hold themselves."""
+    from jinja2 import Environment, FileSystemLoader, StrictUndefined
+    from markupsafe import Markup
+
+    here = FileSystemLoader(Path(__file__).parent)
+    made = Environment(loader=here, autoescape=True, undefined=StrictUndefined, trim_blocks=True, lstrip_blocks=True)
+    made.filters["drawn"] = Markup
+    return made.get_template("sheet.html")

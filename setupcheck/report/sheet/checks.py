@@ -1,0 +1,73 @@
+"""Points to check and sign at one setup before going on, from what the job says of it."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator
+
+from setupcheck.flow import Review
+from setupcheck.jobfile.setups import Hold, Setup
+from setupcheck.quantities.devices import DEVICES
+from setupcheck.report.sheet.showing import Showing, paper
+
+OUTSIDE = (
+    "Stop. Do not cut, join or go on to the next operation.",
+    "Read it once more, with the part turned round or the indicator set up afresh.",
+    "Set it right and read again, if that can be done.",
+    "If it stays: see what it costs, with `setupcheck vary JOB --set 'KEY=VALUE'`, KEY as printed beside the box.",
+    "Write it into the job file beside its plan and review again: what still can be moved stands under STILL TO MOVE, and what "
+    "would do under `setupcheck remedy JOB`.",
+    "Go on only when the review passes again, or when somebody who may do so signs for the deviation below.",
+)
+"""What to do when a box falls outside, step by step. Source: common practice."""
+
+
+def checks(found: Review, setup: Setup) -> list[str]:
+    """Hold points of one setup, in the order of the work."""
+    return list(_of(found, Showing(found), setup))
+
+
+def _of(found: Review, show: Showing, setup: Setup) -> Iterator[str]:
+    if setup.keeps is not None:
+        yield f"The holding of op {setup.keeps} was never opened"
+    if setup.hold is not None:
+        yield from _held(setup.hold)
+    if setup.head is not None:
+        side = f", {setup.head.leans}" if setup.head.leans else ""
+        yield f"Head leaned by {show.angle(setup.head.tilt)}{side}, and locked"
+        if setup.head.mid_plane is not None and setup.head.mid_plane.found != "no-tilt":
+            yield "Cutter's height set, or set again, with the head as it is leaned now"
+    if setup.divide is not None:
+        circle = f": circle of {setup.divide.circle} holes" if setup.divide.circle else ""
+        yield f"Dividing ready by its index table{circle}; one trial turn round closes on place 1"
+    for name, cut in setup.cut.items():
+        if cut.depth_from is not None:
+            yield f"Depth of {paper(name, 40)} counted from {paper(cut.depth_from.surface, 40)} as touched, dial at zero"
+    if setup.cut and setup.divide is not None:
+        yield "After the first full circle: last gap against the first, before the finishing pass"
+    if setup.join is not None:
+        yield from _joined(show, setup)
+    yield "Every box of this page is filled, and none lies outside what may be accepted"
+
+
+def _held(hold: Hold) -> Iterator[str]:
+    for entry in (hold.centre, hold.and_centre):
+        if entry is not None:
+            gripped = "read with the part gripped as it will be cut" if DEVICES[entry.by].grips else "read and locked"
+            yield f"{paper(entry.on, 40)} {DEVICES[entry.by].words}, {gripped}"
+    if hold.square is not None:
+        yield f"{paper(hold.square.on, 40)} wiped, no chip under it, read on its face"
+    if hold.stop is not None:
+        yield f"{paper(hold.stop.on, 40)} firmly on the stop"
+
+
+def _joined(show: Showing, setup: Setup) -> Iterator[str]:
+    join = setup.join
+    assert join is not None
+    yield "Both diameters measured, at the same temperature as the gauge"
+    if join.stop is not None and join.stop.spacers:
+        yield "Spacers measured, clean, and on the right side of the face"
+    if join.heat is not None:
+        if join.heat.gauge is not None:
+            yield f"Gauge of {show.length(join.heat.gauge)} enters the hot bore before the hub is lifted"
+        yield "The way from heat or cold to the joint rehearsed cold, nothing in it, hands protected"
+    yield "Cold again: run-out and the gap at the shoulder read"

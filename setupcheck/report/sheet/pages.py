@@ -1,0 +1,379 @@
+"""What stands on each page of the sheet, as plain records that the template lays out."""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+
+from setupcheck.flow import ReadBack, Review
+from setupcheck.jobfile.setups import Setup
+from setupcheck.notation import show
+from setupcheck.quantities.book import Known
+from setupcheck.quantities.index_table import IndexTable
+from setupcheck.quantities.scopes import stack_of
+from setupcheck.record import record
+from setupcheck.report.heating_plan import heating_plans_as_data
+from setupcheck.report.index_table import OnPaper, on_paper
+from setupcheck.report.insert import inserts
+from setupcheck.report.joint import joints
+from setupcheck.report.pictures import Picture, pictures
+from setupcheck.report.remedies import remedy_in_words
+from setupcheck.report.sheet.boxes import Boxes, Row
+from setupcheck.report.sheet.checks import checks
+from setupcheck.report.sheet.showing import paper
+from setupcheck.report.sheet.words import Said, Words
+from setupcheck.report.text import counts, limits_in_words
+from setupcheck.report.uncomputed import in_lines, uncomputed
+from setupcheck.report.wording import finer, title_of, unit_of
+from setupcheck.report.worked_out import worked_out
+from setupcheck.rulebook.records import CautionLine
+
+DATUM = {
+    "stock": "stock, as the blank brings it",
+    "made": "made in op {}",
+    "rough": "rough, from op {}",
+    "same-holding": "cut in this same holding",
+    "not-yet-made": "NOT MADE YET",
+    "cut-away": "CUT AWAY by then",
+}
+"""How a datum is found when it is held on."""
+
+
+MOST_PLACES = 2
+"""Operations at which a caution still is their own and stands on their pages; one of more setups stands on the page of cautions.
+Source: our choice, so that what is special to a setup is not lost among what always holds."""
+
+
+@record
+class Caution:
+    """A caution once, with where it applies and whether somebody signed for it."""
+
+    text: str
+    where: str
+    state: str
+    stop: bool
+
+
+@record
+class Step:
+    """One line of the route."""
+
+    op: int
+    machine: str
+    held: tuple[Said, ...]
+    cuts: tuple[str, ...]
+
+
+@record
+class Share:
+    """What one operation adds to one requirement."""
+
+    title: str
+    part: str
+    worst: str
+    room: str
+    inside: bool
+
+
+@record
+class Operation:
+    """One page: everything that one operation needs at the machine."""
+
+    op: int
+    machine: str
+    note: str
+    toward: str
+    cautions: tuple[Caution, ...]
+    general: bool
+    held: tuple[Said, ...]
+    head: tuple[Said, ...]
+    divide: tuple[Said, ...]
+    cuts: tuple[Said, ...]
+    passes: tuple[tuple[str, list[tuple[str, str]]], ...]
+    joined: tuple[Said, ...]
+    worked: tuple[Said, ...]
+    heating: tuple[str, ...]
+    boxes: tuple[Row, ...]
+    shares: tuple[Share, ...]
+    checks: tuple[str, ...]
+    pictures: tuple[Picture, ...]
+
+
+@record
+class Trouble:
+    """A finding that is not passed, and what to do about it."""
+
+    verdict: str
+    rule: str
+    at: str
+    line: int
+    message: str
+    remedy: str
+
+
+@record(eq=False)
+class Sheet:
+    """All pages."""
+
+    title: str
+    job: str
+    revision: str
+    file: str
+    sha256: str
+    version: str
+    rule_book: str
+    rule_hash: str
+    verdict: str
+    counts: str
+    units: str
+    room: str
+    parts: tuple[Said, ...]
+    troubles: tuple[Trouble, ...]
+    unsigned: int
+    cautions: tuple[Caution, ...]
+    data: tuple[Said, ...]
+    asked: tuple[str, ...]
+    route: tuple[Step, ...]
+    incoming: tuple[Row, ...]
+    operations: tuple[Operation, ...]
+    tables: tuple[OnPaper, ...]
+    texts: tuple[tuple[str, str], ...]
+    finished: tuple[Row, ...]
+    grid: bool
+    overview: tuple[Picture, ...]
+    stacks: tuple[Picture, ...]
+    not_computed: tuple[str, ...]
+    closing: str
+
+
+def sheet_of(found: Review, read: ReadBack | None = None) -> Sheet:
+    """Everything that goes on the sheet of a job."""
+    from setupcheck import __version__
+
+    job, loaded, boxes = found.loaded.job, found.loaded, Boxes(found)
+    drawn = pictures(found, read)
+    operations = tuple(_operation(found, setup, boxes, drawn) for setup in job.setups)
+    used = {picture.name for one in operations for picture in one.pictures}
+    stacks = tuple(p for name, p in drawn.items() if name.startswith("stack-") and name not in used)
+    overview = tuple(p for name, p in drawn.items() if p not in stacks and name not in used)
+    left = [s for s in found.evaluation.cautions if s.severity == "stop-and-check" and not s.answered]
+    limited = " of what this version computes" if found.verdict == "pass" and uncomputed(loaded) else ""
+    return Sheet(
+        title=paper(job.title),
+        job=paper(job.job or "", 60),
+        revision=paper(job.revision or "", 60),
+        file=paper(loaded.file, 80),
+        sha256=loaded.sha256,
+        version=__version__,
+        rule_book=found.rulebook.version,
+        rule_hash=found.rulebook.sha256[:16],
+        verdict=f"{found.verdict.upper()}{limited}",
+        counts=counts(found),
+        units="inch" if found.book.inches else "mm",
+        room=f"{job.room:g} degC",
+        parts=tuple(
+            Said(paper(name, 60), paper(part.material or "material not stated", 60)) for name, part in job.parts.items()
+        ),
+        troubles=tuple(_troubles(found)),
+        unsigned=len(left),
+        cautions=_cautions(found),
+        data=_data(found, op=False),
+        asked=tuple(_asked(found)),
+        route=tuple(_step(found, setup) for setup in job.setups),
+        incoming=tuple(boxes.incoming()),
+        operations=operations,
+        tables=tuple(_tables(found)),
+        texts=tuple(_texts(found)),
+        finished=tuple(boxes.finished()),
+        grid=job.mesh is not None,
+        overview=overview,
+        stacks=stacks,
+        not_computed=tuple(in_lines(uncomputed(loaded))),
+        closing=found.rulebook.closing_line,
+    )
+
+
+def _troubles(found: Review) -> list[Trouble]:
+    return [
+        Trouble(f.verdict, f.rule, paper(f.at or "job", 80), f.line, paper(f.message, 400), paper(_do(found, f), 400))
+        for f in found.evaluation.findings
+        if f.verdict in ("fail", "open", "warn", "waived")
+    ]
+
+
+def _do(found: Review, finding: object) -> str:
+    from setupcheck.rulebook import Finding
+
+    assert isinstance(finding, Finding)
+    if finding.verdict == "open" and finding.missing:
+        return f"Fill {', '.join(finding.missing[:4])}"
+    if finding.verdict == "waived":
+        return f"Waived: {finding.waiver}"
+    return remedy_in_words(found, finding) or ""
+
+
+def _cautions(found: Review) -> tuple[Caution, ...]:
+    """Every caution once, stop and check first, with all its operations."""
+    alike: dict[tuple[str, str], list[CautionLine]] = {}
+    for line in found.evaluation.cautions:
+        alike.setdefault((line.id, line.state), []).append(line)
+    every = [_caution(lines[0], lines) for lines in alike.values()]
+    return tuple(sorted(every, key=lambda c: not c.stop))
+
+
+def _caution(first: CautionLine, lines: list[CautionLine]) -> Caution:
+    ops = [str(line.op) for line in lines if line.op is not None]
+    because = f" ({paper(first.because, 200)})" if first.because else ""
+    where = f"op {', '.join(ops)}" if ops else "whole job"
+    return Caution(f"{first.text}{because}", where, paper(first.state, 80), first.severity == "stop-and-check")
+
+
+def _data(found: Review, *, op: bool) -> tuple[Said, ...]:
+    """Lines that were worked out, those of operations or the others."""
+    lines = []
+    for told in worked_out(found):
+        about, _, text = told.partition(": ")
+        if told.startswith("op ") == op:
+            lines.append(Said(about, text))
+    return tuple(lines)
+
+
+def _asked(found: Review) -> list[str]:
+    lines = []
+    for scope in found.book.instances("stack"):
+        result = found.results.get(scope.key)
+        if result is None:
+            lines.append(f"{title_of(scope)}: cannot tell")
+            continue
+        unit, digits = unit_of(found.book, scope)
+        lines.append(f"{title_of(scope)} {limits_in_words(result, unit, digits)}")
+    return [paper(line, 200) for line in lines]
+
+
+def _step(found: Review, setup: Setup) -> Step:
+    words = Words(found)
+    held = []
+    if setup.hold is not None:
+        for step in ("centre", "and_centre", "square", "stop", "clock"):
+            entry = getattr(setup.hold, step)
+            if entry is not None:
+                held.append(Said(_ROLE[step], f"{paper(entry.on, 40)}, {_datum(found, f'{setup.op}/{step}')}"))
+    elif setup.keeps is not None:
+        held.append(Said("As before", f"the holding of op {setup.keeps}, never opened"))
+    if setup.join is not None:
+        held.append(
+            Said("Joined", f"{paper(setup.join.outer, 60)} on {paper(setup.join.inner, 60)} by {setup.join.by}")
+        )
+    cuts = tuple(f"{said.about}: {said.text.split('; ')[0]}" for said in words.cuts(setup))
+    return Step(setup.op, _machine(setup), tuple(held), cuts)
+
+
+_ROLE = {"centre": "Axis", "and_centre": "Second plane", "square": "Lean", "stop": "Length", "clock": "Angle"}
+
+
+def _datum(found: Review, key: str) -> str:
+    datum = found.floor.datums.get(key)
+    if datum is None:
+        return "state not known"
+    return DATUM.get(datum.state, datum.state).format(datum.made_at)
+
+
+def _machine(setup: Setup) -> str:
+    return paper(setup.machine or ("joining" if setup.join is not None else "machine not stated"), 60)
+
+
+def _operation(found: Review, setup: Setup, boxes: Boxes, drawn: dict[str, Picture]) -> Operation:
+    words = Words(found)
+    scope = next(s for s in found.book.instances("setup") if s.key == str(setup.op))
+    ways = {1: "+z end towards the tool", -1: "-z end towards the tool"}
+    mine = [c for c in found.evaluation.cautions if c.op == setup.op]
+    mine.sort(key=lambda c: (c.severity != "stop-and-check", bool(c.because)))
+    own = [c for c in mine if c.severity == "stop-and-check" or _places(found, c.id) <= MOST_PLACES]
+    about = f"op {setup.op}, "
+    plans = [plan for plan in heating_plans_as_data(found) if plan["op"] == setup.op] if setup.join else []
+    steps = [str(step) for plan in plans for step in _list(plan["steps"])]
+    keeps = [Said("Held", f"as in op {setup.keeps}, never opened since")] if setup.keeps is not None else []
+    return Operation(
+        op=setup.op,
+        machine=_machine(setup),
+        note=paper(setup.note or "", 300),
+        toward=ways.get(setup.looks_at_tool or 0, ""),
+        cautions=tuple(_caution(c, [c]) for c in own),
+        general=len(own) < len(mine),
+        held=(*keeps, *(words.hold(setup.hold) if setup.hold is not None else [])),
+        head=tuple(words.head(setup.head)) if setup.head is not None else (),
+        divide=tuple(words.divide(setup.divide, scope)) if setup.divide is not None else (),
+        cuts=tuple(words.cuts(setup)),
+        passes=tuple(words.passes(setup)),
+        joined=tuple(words.join(setup.join)) if setup.join is not None else (),
+        worked=tuple(
+            Said(one.about.removeprefix(about), one.text)
+            for one in _data(found, op=True)
+            if one.about.startswith(about)
+        ),
+        heating=tuple(steps),
+        boxes=tuple(boxes.of_setup(setup)),
+        shares=tuple(_shares(found, setup.op)),
+        checks=tuple(checks(found, setup)),
+        pictures=tuple(_pictures(found, setup, drawn)),
+    )
+
+
+def _places(found: Review, caution: str) -> int:
+    return sum(c.id == caution for c in found.evaluation.cautions)
+
+
+def _list(value: object) -> list[object]:
+    return list(value) if isinstance(value, list | tuple) else []
+
+
+def _pictures(found: Review, setup: Setup, drawn: dict[str, Picture]) -> list[Picture]:
+    """The holding, the head, the heat, and the stack in which this operation weighs most."""
+    names = [f"hold-{setup.op}", f"head-{setup.op}", f"heating-{setup.op}"]
+    return [drawn[name] for name in names if name in drawn]
+
+
+def _shares(found: Review, op: int) -> list[Share]:
+    """Every requirement that this operation has a part in, the largest part of its limit first."""
+    rows: list[tuple[float, Share]] = []
+    for scope in found.book.instances("stack"):
+        result = found.results.get(scope.key)
+        if result is None:
+            continue
+        mine = sum(s.worst for s in result.combined.shares if s.cause.op == op)
+        if mine <= 0.0:
+            continue
+        unit, digits = unit_of(found.book, scope)
+        fine, more = finer(stack_of(scope).unit, inches=found.book.inches)
+        margin = result.margin
+        room = show(margin, fine, more) if margin is not None else ""
+        share = Share(
+            paper(title_of(scope), 80),
+            show(mine, fine, more),
+            limits_in_words(result, unit, digits),
+            room,
+            margin is None or margin >= 0.0,
+        )
+        rows.append((mine / result.scale if result.scale else 0.0, share))
+    return [share for _, share in sorted(rows, key=lambda row: -row[0])]
+
+
+def _tables(found: Review) -> list[OnPaper]:
+    tables = []
+    for scope in found.book.instances("setup"):
+        answer = found.book.get("divide.table", scope)
+        if isinstance(answer, Known) and isinstance(answer.value, IndexTable):
+            tables.append(on_paper(found.book, scope, answer.value))
+    return tables
+
+
+_BLOCKS: tuple[tuple[str, Callable[[Review], object]], ...] = (("Joint", joints), ("Insert", inserts))
+
+
+def _texts(found: Review) -> list[tuple[str, str]]:
+    """Tables that stand best as they are printed: of joints and of inserts."""
+    told = []
+    for title, block in _BLOCKS:
+        lines = [str(line) for line in block(found)]  # type: ignore[attr-defined]
+        if lines:
+            told.append((title, "\n".join(lines)))
+    return told

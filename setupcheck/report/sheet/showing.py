@@ -1,0 +1,84 @@
+"""Values of the job file in the units of the file, as they go on paper. Lengths mm, angles rad."""
+
+from __future__ import annotations
+
+from setupcheck.flow import Review
+from setupcheck.jobfile.models import Deviation, Dimension
+from setupcheck.notation import show, show_angle
+from setupcheck.report.wording import as_stated, clean
+
+MINUTE = 2.9e-4
+"""A minute of arc [rad], from which on small angles are shown in minutes. Source: our choice."""
+LONGEST = 160
+"""Characters of one text of the job file on paper. Source: our choice; two lines of it."""
+
+
+def paper(text: str, most: int = LONGEST) -> str:
+    """Text of the job file for paper: nothing a reader of text would obey, and cut short where it is endless."""
+    told = " ".join(clean(text[: 4 * most]).split())
+    return told if len(told) <= most else told[: most - 1] + "…"
+
+
+class Showing:
+    """How one job shows its values."""
+
+    def __init__(self, found: Review) -> None:
+        self.inches = found.book.inches
+
+    def fine(self, value: float) -> str:
+        """A small length, with as few decimals as tell it."""
+        return as_stated(value, inches=self.inches)
+
+    def length(self, value: float) -> str:
+        """A size."""
+        unit, digits = ("in", 5) if self.inches else ("mm", 4)
+        number, _, word = show(value, unit, digits).partition(" ")
+        whole, _, decimals = number.partition(".")
+        return f"{whole}.{decimals.rstrip('0').ljust(3 if self.inches else 2, '0')} {word}"
+
+    def angle(self, value: float) -> str:
+        """An angle that is set, in all three spellings, so that nobody converts at the machine."""
+        return f"{show_angle(value, 'dms', 0)} | {show_angle(value, 'gon', 4)} | {show_angle(value, 'deg', 4)}"
+
+    def small_angle(self, value: float) -> str:
+        """A bound on an angle."""
+        minutes = abs(value) >= MINUTE
+        return show(value, "arcmin" if minutes else "arcsec", 1 if minutes else 0)
+
+    def heat(self, value: float) -> str:
+        return f"{value:g} degC"
+
+    def planned(self, given: Deviation | None) -> str:
+        """What the job file says of an error: `up to 6 um; measured 4 um ± 1 um, high at tooth 14`; empty where it is silent."""
+        if given is None:
+            return ""
+        parts = []
+        if given.at_most is not None:
+            parts.append(f"up to {self.fine(given.at_most)}")
+        if given.measured is not None:
+            known = f" ± {self.fine(2.0 * given.u)}" if given.u else ""
+            high = f", high at {paper(given.high_at, 30)}" if given.high_at else ""
+            parts.append(f"measured {self.fine(given.measured)}{known}{high}")
+        if not parts and given.device:
+            parts.append(f"typical of {paper(given.device, 30)}")
+        return "; ".join(parts)
+
+    def size(self, given: Dimension) -> str:
+        """A size with its limits, and as measured."""
+        parts = []
+        if given.nominal is not None:
+            fit = f" {given.fit}" if given.fit else ""
+            number, _, unit = self.length(given.nominal).partition(" ")
+            limits = ""
+            if given.lower is not None and given.upper is not None and not given.fit:
+                same = abs(given.lower + given.upper) < 1e-9
+                limits = (
+                    f" ± {self.fine(given.upper)}" if same else f" {self._sign(given.lower)}, {self._sign(given.upper)}"
+                )
+            parts.append(f"{number}{fit} {unit}{limits}")
+        if given.measured is not None:
+            parts.append(f"measured {self.length(given.measured)}")
+        return "; ".join(parts)
+
+    def _sign(self, value: float) -> str:
+        return ("+" if value > 0.0 else "-" if value < 0.0 else "") + self.fine(abs(value))

@@ -1,0 +1,218 @@
+"""One setup in words: what is held on what and how, how the head leans, how it divides, what is cut. Lengths mm, angles rad."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator
+
+from setupcheck.flow import Review
+from setupcheck.jobfile.dividing import Divide
+from setupcheck.jobfile.models import Cutter
+from setupcheck.jobfile.setups import Centre, Cut, Head, Hold, Join, Setup
+from setupcheck.quantities.book import Known, Open, Scope
+from setupcheck.quantities.devices import DEVICES
+from setupcheck.record import record
+from setupcheck.report.sheet.showing import Showing, paper
+
+RESTS = {
+    "hanging": "hangs on it",
+    "pushed": "is pushed to one side",
+    "free": "lies where it likes",
+    "centred": "is centred in it",
+}
+
+
+@record
+class Said:
+    """One line of a table: what it is about, and what is said."""
+
+    about: str
+    text: str
+
+
+class Words:
+    """The setups of one job in words."""
+
+    def __init__(self, found: Review) -> None:
+        self.found = found
+        self.show = Showing(found)
+
+    def hold(self, hold: Hold) -> list[Said]:
+        """What rules the axis, the lean, the length and the angle."""
+        lines = []
+        if hold.centre is not None:
+            lines.append(Said("Axis", self._centre(hold.centre)))
+        if hold.and_centre is not None:
+            lines.append(Said("Second plane", self._centre(hold.and_centre)))
+        if hold.square is not None:
+            s = hold.square
+            by = f" against {paper(s.by, 40)}" if s.by else ""
+            read = f", face run-out {self.show.planned(s.face_runout)}" if s.face_runout is not None else ""
+            across = f" on {self.show.length(s.across)}" if s.across is not None else ""
+            chip = f"; a chip of {self.show.fine(s.chip)} is reckoned with" if s.chip else ""
+            lines.append(Said("Lean", f"{paper(s.on, 40)}{by}{read}{across}{chip}"))
+        if hold.stop is not None:
+            t = hold.stop
+            error = f", {self.show.planned(t.error)}" if t.error is not None else ""
+            point = " (a single point)" if t.touches == "point" else ""
+            lines.append(Said("Length", f"{paper(t.on, 40)} on the stop{point}{error}"))
+        if hold.clock is not None:
+            c = hold.clock
+            error = f", {self.show.planned(c.error)}" if c.error is not None else ""
+            lines.append(Said("Angle", f"number {c.number} of {paper(c.on, 40)}{error}"))
+        return lines
+
+    def _centre(self, centre: Centre) -> str:
+        parts = [f"{paper(centre.on, 40)} {DEVICES[centre.by].words}"]
+        if centre.grip is not None:
+            ends = f"{self.show.length(centre.grip.low)} to {self.show.length(centre.grip.high)}"
+            parts.append(f"gripped from {ends}")
+        if centre.at is not None:
+            parts.append(f"read at {self.show.length(centre.at)} along the part")
+        if centre.grip_force is not None:
+            parts.append(f"{centre.grip_force / 1000.0:g} kN at each jaw")
+        if centre.clearance is not None:
+            low, high = centre.clearance
+            rests = RESTS[centre.rests or DEVICES[centre.by].rests]
+            parts.append(f"play {self.show.fine(low)} to {self.show.fine(high)}, the part {rests}")
+        if centre.runout is not None:
+            parts.append(f"run-out {self.show.planned(centre.runout)}")
+        if centre.x is not None or centre.y is not None:
+            both = [f"{axis} ± {self.show.fine(v)}" for axis, v in (("X", centre.x), ("Y", centre.y)) if v is not None]
+            parts.append(", ".join(both))
+        for device in centre.through:
+            parts.append(f"on {paper(device.by, 40)}, run-out {self.show.planned(device.runout) or 'not stated'}")
+        return "; ".join(parts)
+
+    def head(self, head: Head) -> list[Said]:
+        """Tilt, side and middle of the head."""
+        known = f", within ± {self.show.small_angle(head.uncertainty)}" if head.uncertainty is not None else ""
+        by = f", set by {head.by}" if head.by else ""
+        lines = [Said("Tilt", f"{self.show.angle(head.tilt)}{known}{by}")]
+        if head.leans:
+            lines.append(Said("Leans", head.leans))
+        middle = head.mid_plane
+        if middle is not None:
+            when = {
+                "after-tilt": "found with the head tilted",
+                "before-tilt": "found before the head was tilted: set the cutter's height again afterwards",
+                "no-tilt": "the head is not tilted",
+            }[middle.found]
+            error = f", {self.show.planned(middle.error)}" if middle.error is not None else ""
+            lines.append(Said("Mid-plane", f"{when}{error}"))
+        return lines
+
+    def divide(self, divide: Divide, scope: Scope) -> list[Said]:
+        """How the circle is divided."""
+        circle = f", circle of {divide.circle} holes" if divide.circle else ""
+        lines = [Said("Divided by", f"{divide.by}{circle}")]
+        step = self.found.book.get("divide.table_step", scope)
+        if isinstance(step, Known):
+            lines.append(Said("From place to place", str(step.value)))
+        if divide.order == "spread":
+            lines.append(Said("Order", "spread: follow the index table place by place"))
+        return lines
+
+    def cuts(self, setup: Setup) -> list[Said]:
+        """Each surface with what it leaves, what stock it meets, and how its teeth are cut."""
+        lines = []
+        for name, cut in setup.cut.items():
+            lines.append(Said(paper(name, 40), "; ".join(self._cut(setup, name, cut))))
+        return lines
+
+    def _cut(self, setup: Setup, name: str, cut: Cut) -> Iterator[str]:
+        yield self._leaves(cut)
+        scope = next(s for s in self.found.book.instances("cut") if s.key == f"{setup.op}/{name}")
+        stock = self.found.book.get("allow.least_stock", scope)
+        if isinstance(stock, Known):
+            yield f"meets at least {self.show.fine(float(stock.value))} of stock"  # type: ignore[arg-type]
+        elif isinstance(stock, Open) and stock.missing:
+            yield f"stock it meets: fill {paper(stock.missing[0], 80)}"
+        if cut.removes:
+            yield f"takes away {', '.join(paper(one, 40) for one in cut.removes)}"
+        if cut.from_surface:
+            yield f"cut out of {paper(cut.from_surface, 40)}"
+        if cut.cutter is not None:
+            yield self.cutter(cut.cutter, self.found.loaded.job.cutters.get(cut.cutter))
+        if cut.depth is not None:
+            touched = (
+                f" from {paper(cut.depth_from.surface, 40)}, the surface that is touched" if cut.depth_from else ""
+            )
+            tool = f" with the tool {cut.depth_from.tool}" if cut.depth_from and cut.depth_from.tool else ""
+            yield f"depth {self.show.length(cut.depth)}{touched}{tool}"
+        if cut.tool_change_after is not None:
+            yield f"tool changed after {cut.tool_change_after} gaps"
+
+    def _leaves(self, cut: Cut) -> str:
+        if cut.to is not None:
+            return f"to {self.show.length(cut.to)}{', rough' if cut.state == 'rough' else ''}"
+        for value, word in (
+            (cut.leave_on_diameter, "on the diameter"),
+            (cut.leave_on_radius, "on the radius"),
+            (cut.leave, "on the face"),
+        ):
+            if value:
+                return f"leaves {self.show.length(value)} {word}{', rough' if cut.state == 'rough' else ''}"
+        return "rough" if cut.state == "rough" else "to its finished size"
+
+    def cutter(self, name: str, cutter: Cutter | None) -> str:
+        """A cutter by its name with what is stated of it."""
+        if cutter is None:
+            return f"cutter {paper(name, 40)}"
+        parts = [f"cutter {paper(name, 40)}: {cutter.kind}"]
+        if cutter.tip_radius is not None:
+            parts.append(f"tip radius {self.show.length(cutter.tip_radius)}")
+        if cutter.diameter is not None:
+            parts.append(f"diameter {self.show.length(cutter.diameter)}")
+        if cutter.width is not None:
+            parts.append(f"insert {self.show.size(cutter.width)} wide")
+        if cutter.speed is not None:
+            parts.append(f"{cutter.speed:g} rev/min")
+        return ", ".join(parts)
+
+    def passes(self, setup: Setup) -> list[tuple[str, list[tuple[str, str]]]]:
+        """For each cut with passes: its name, and of each pass its depth and the depth reached."""
+        found = []
+        for name, cut in setup.cut.items():
+            reached, rows = 0.0, []
+            for one in cut.passes:
+                reached += one
+                rows.append((self.show.length(one), self.show.length(reached)))
+            if rows:
+                found.append((paper(name, 40), rows))
+        return found
+
+    def join(self, join: Join) -> list[Said]:
+        """Two parts put together."""
+        lines = [Said("Joined", f"{paper(join.outer, 60)} on {paper(join.inner, 60)}, by {join.by}")]
+        if join.square:
+            lines.append(Said("Lean", f"ruled by the {join.square}"))
+        if join.stop is not None:
+            between = "".join(f", {paper(s.name, 40)} of {self.show.size(s.length)} between" for s in join.stop.spacers)
+            against = f" against {paper(join.stop.against, 60)}" if join.stop.against else ""
+            lines.append(Said("Length", f"{paper(join.stop.on, 60)}{against}{between}"))
+        if join.joint:
+            lines.append(Said("Surfaces", join.joint))
+        if join.grips_first:
+            lines.append(Said("Grips first", join.grips_first))
+        if join.heat is not None:
+            lines += self._heat(join)
+        if join.mounted_at is not None:
+            lines.append(Said("Mounted", f"its mark at {self.show.small_angle(join.mounted_at)} of the other's mark"))
+        if join.clearance is not None:
+            low, high = join.clearance
+            lines.append(Said("Play", f"{self.show.fine(low)} to {self.show.fine(high)}"))
+        return lines
+
+    def _heat(self, join: Join) -> Iterator[Said]:
+        heat = join.heat
+        assert heat is not None
+        if heat.hub is not None:
+            off = f" ± {heat.oven_error:g} K" if heat.oven_error is not None else ""
+            yield Said("Hub", f"{heat.hub:g} degC{off}{f' by {heat.by}' if heat.by else ''}")
+        if heat.shaft is not None:
+            off = f" ± {heat.cold_error:g} K" if heat.cold_error is not None else ""
+            yield Said("Shaft", f"{heat.shaft:g} degC{off}{f' by {heat.cold_by}' if heat.cold_by else ''}")
+        if heat.carry is not None:
+            yield Said("Carried", f"{heat.carry:g} s to the joint")
+        if heat.gauge is not None:
+            yield Said("Gauge", f"{self.show.length(heat.gauge)}, tried in the hot bore")
