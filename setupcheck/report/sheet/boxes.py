@@ -60,12 +60,9 @@ class Boxes:
         return self._row(key, says, self.show.planned(given), cells)
 
     def size(self, key: str, says: str, given: Dimension) -> Row:
-        """A size with the temperature it was measured at."""
-        cells = (
-            Cell(".measured", self.long),
-            Cell(".at_temperature", "at degC"),
-            Cell(".uncertainty", f"known to ± {self.fine}"),
-        )
+        """A size; a diameter with the temperature it was measured at, as it alone is brought back to 20 degC."""
+        warm = (Cell(".at_temperature", "at degC"),) if key.endswith(".diameter") else ()
+        cells = (Cell(".measured", self.long), *warm, Cell(".uncertainty", f"known to ± {self.fine}"))
         return self._row(key, says, self.show.size(given), cells)
 
     def plain(self, key: str, says: str, plan: str, unit: str) -> Row:
@@ -245,8 +242,16 @@ class Boxes:
         if isinstance(wheel, Toothing):
             gaps = _round_the_wheel(wheel.count, PLACES)
             places = tuple(Cell(f".readings.gap {n}", f"gap {n}, {self.fine}") for n in gaps)
-            says = "backlash, the worm pressed one way along its axis"
+            says = "backlash round the wheel"
             rows.append(self._row("mesh.backlash_read", says, "", (*places, Cell(".uncertainty", f"± {self.fine}"))))
+        flanks = (
+            Cell(f".{side}.{end}", word)
+            for side in ("right", "left")
+            for end, word in (("at", self.long), ("towards", "a face"), ("height", "tip, middle, root"), ("share", "%"))
+        )
+        says = "where blue marks: the face seen from, then each flank as sketched below"
+        cells = (Cell(".seen_from", "a face"), Cell(".film", self.fine), *flanks)
+        rows.append(self._row("mesh.mark", says, "", cells))
         return rows
 
 
