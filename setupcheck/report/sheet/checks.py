@@ -23,10 +23,10 @@ OUTSIDE = (
 
 def checks(found: Review, setup: Setup) -> list[str]:
     """Hold points of one setup, in the order of the work."""
-    return list(_of(found, Showing(found), setup))
+    return list(dict.fromkeys(_of(Showing(found), setup)))
 
 
-def _of(found: Review, show: Showing, setup: Setup) -> Iterator[str]:
+def _of(show: Showing, setup: Setup) -> Iterator[str]:
     if setup.keeps is not None:
         yield f"The holding of op {setup.keeps} was never opened"
     if setup.hold is not None:

@@ -14,6 +14,7 @@ from setupcheck.record import record
 from setupcheck.report.heating_plan import heating_plans_as_data
 from setupcheck.report.index_table import OnPaper, on_paper
 from setupcheck.report.insert import inserts
+from setupcheck.report.insert import readings as ground
 from setupcheck.report.joint import joints
 from setupcheck.report.pictures import Picture, pictures
 from setupcheck.report.remedies import remedy_in_words
@@ -38,6 +39,12 @@ DATUM = {
 """How a datum is found when it is held on."""
 
 
+STOPPED = {
+    "fail": "Not for the machine yet: this plan does not meet what was asked.",
+    "open": "Not for the machine yet: something is missing, and nobody can tell whether this plan meets what was asked.",
+}
+"""What stands large under a verdict that is no pass."""
+
 MOST_PLACES = 2
 """Operations at which a caution still is their own and stands on their pages; one of more setups stands on the page of cautions.
 Source: our choice, so that what is special to a setup is not lost among what always holds."""
@@ -51,6 +58,18 @@ class Caution:
     where: str
     state: str
     stop: bool
+
+
+@record
+class Trouble:
+    """A finding that is not passed, and what to do about it."""
+
+    verdict: str
+    rule: str
+    at: str
+    line: int
+    message: str
+    remedy: str
 
 
 @record
@@ -84,6 +103,7 @@ class Operation:
     toward: str
     cautions: tuple[Caution, ...]
     general: bool
+    troubles: tuple[Trouble, ...]
     held: tuple[Said, ...]
     head: tuple[Said, ...]
     divide: tuple[Said, ...]
@@ -96,18 +116,6 @@ class Operation:
     shares: tuple[Share, ...]
     checks: tuple[str, ...]
     pictures: tuple[Picture, ...]
-
-
-@record
-class Trouble:
-    """A finding that is not passed, and what to do about it."""
-
-    verdict: str
-    rule: str
-    at: str
-    line: int
-    message: str
-    remedy: str
 
 
 @record(eq=False)
@@ -129,6 +137,7 @@ class Sheet:
     parts: tuple[Said, ...]
     troubles: tuple[Trouble, ...]
     unsigned: int
+    stopped: str
     cautions: tuple[Caution, ...]
     data: tuple[Said, ...]
     asked: tuple[str, ...]
@@ -175,6 +184,7 @@ def sheet_of(found: Review, read: ReadBack | None = None) -> Sheet:
         ),
         troubles=tuple(_troubles(found)),
         unsigned=len(left),
+        stopped=STOPPED.get(found.verdict, ""),
         cautions=_cautions(found),
         data=_data(found, op=False),
         asked=tuple(_asked(found)),
@@ -192,11 +202,12 @@ def sheet_of(found: Review, read: ReadBack | None = None) -> Sheet:
     )
 
 
-def _troubles(found: Review) -> list[Trouble]:
+def _troubles(found: Review, op: int | None = None) -> list[Trouble]:
+    """What is not passed, in the whole job or in one operation."""
     return [
         Trouble(f.verdict, f.rule, paper(f.at or "job", 80), f.line, paper(f.message, 400), paper(_do(found, f), 400))
         for f in found.evaluation.findings
-        if f.verdict in ("fail", "open", "warn", "waived")
+        if f.verdict in ("fail", "open", "warn", "waived") and op in (None, f.op)
     ]
 
 
@@ -299,6 +310,7 @@ def _operation(found: Review, setup: Setup, boxes: Boxes, drawn: dict[str, Pictu
         toward=ways.get(setup.looks_at_tool or 0, ""),
         cautions=tuple(_caution(c, [c]) for c in own),
         general=len(own) < len(mine),
+        troubles=tuple(_troubles(found, setup.op)),
         held=(*keeps, *(words.hold(setup.hold) if setup.hold is not None else [])),
         head=tuple(words.head(setup.head)) if setup.head is not None else (),
         divide=tuple(words.divide(setup.divide, scope)) if setup.divide is not None else (),
@@ -366,7 +378,11 @@ def _tables(found: Review) -> list[OnPaper]:
     return tables
 
 
-_BLOCKS: tuple[tuple[str, Callable[[Review], object]], ...] = (("Joint", joints), ("Insert", inserts))
+_BLOCKS: tuple[tuple[str, Callable[[Review], object]], ...] = (
+    ("Joint", joints),
+    ("Insert", inserts),
+    ("Grinding the insert", ground),
+)
 
 
 def _texts(found: Review) -> list[tuple[str, str]]:
