@@ -1,0 +1,445 @@
+"""Each requirement on its own limit's scale: the causes side by side as a bar, and each of them as a sentence.
+
+What the bar shows is what the review prints: worst = base + the sum of the pushes, towards the end that is judged, and both
+ways from the base where there are two limits. A cause that takes away is drawn under the bar, backwards.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Iterator, Sequence
+
+from setupcheck.flow import Review
+from setupcheck.ledger.causes import Cause
+from setupcheck.notation import show
+from setupcheck.quantities.book import Open, Scope
+from setupcheck.quantities.judged import Result
+from setupcheck.quantities.scopes import stack_of
+from setupcheck.record import record
+from setupcheck.report.causes import cause_in_words
+from setupcheck.report.pictures import WIDEST, Picture
+from setupcheck.report.pictures.fitting import SIZE, box, short, wrapped
+from setupcheck.report.rests import how_known
+from setupcheck.report.svg import THICK, THIN, line, picture, polygon, room, words
+from setupcheck.report.text import limits_in_words
+from setupcheck.report.wording import finer, in_unit, title_of, unit_of
+
+NO_STACK = ("torque", "contact-length", "contact-area")
+"""Requirements that are offered only where they have a value and a limit."""
+MOST_CAUSES = 7
+"""Causes that get a sentence of their own. Source: our choice, for the height of the drawing."""
+LEFT, RIGHT = 6.0, 174.0
+"""Where the scale begins and ends [mm of paper]. Source: our choice."""
+BAR_TOP, BAR = 25.0, 7.0
+"""Upper edge and height of the bar [mm of paper]. Source: our choice."""
+GREYS = ("#ffffff", "#bbbbbb", "#e4e4e4", "#999999", "#d0d0d0", "#f2f2f2", "#adadad")
+"""Fills of the pieces in their order; neighbours differ in black and white too. Source: our choice."""
+LIMIT_LINE = 0.9
+"""Width of the line of a limit [mm of paper], which no piece may be taken for. Source: our choice."""
+ROW = 4.6
+"""Distance of two lines of text [mm of paper]. Source: our choice."""
+
+
+@record
+class Piece:
+    """One cause in the bar: how far it moves the figure down and up [base unit of the figure]; negative where it takes away.
+
+    number  links piece and sentence;  measured  somebody has read it at the machine
+    """
+
+    number: int
+    said: str
+    down: float
+    up: float
+    measured: bool = False
+
+    @property
+    def size(self) -> float:
+        return max(self.down, self.up, key=abs)
+
+
+@record
+class Bar:
+    """A requirement ready to draw, all values in its base unit.
+
+    base   value that the causes move;  ways  "up", "down" or both: where they are drawn
+    ends   worst, likely and rss on each way drawn, as (words, from, to)
+    """
+
+    scope: Scope
+    result: Result
+    base: float
+    pieces: tuple[Piece, ...]
+    ways: tuple[str, ...]
+    unit: str
+    digits: int
+
+    @property
+    def limits(self) -> tuple[float, ...]:
+        s = self.result.stack
+        return tuple(x for x in (s.low, s.high) if x is not None)
+
+
+def offered(found: Review) -> Iterator[Picture]:
+    """One drawing for each requirement, open ones too; torque and contact where they have a value."""
+    for scope in found.book.instances("stack"):
+        stack = stack_of(scope)
+        if scope.key not in found.results and stack.require.what in NO_STACK:
+            continue
+        number = stack.index + 1
+        title = f"{number}: {title_of(scope)}, its causes on the scale of its limit"
+        yield Picture(f"stack-{number}", title, lambda scope=scope: _draw(found, scope))  # type: ignore[misc]
+
+
+def _draw(found: Review, scope: Scope) -> str:
+    result = found.results.get(scope.key)
+    return _open(found, scope) if result is None else _closed(found, bar_of(found, scope, result))
+
+
+def bar_of(found: Review, scope: Scope, result: Result) -> Bar:
+    """The pieces of a requirement, biggest first, the smallest gathered; their sum with the base is the worst case."""
+    c, stack = result.combined, result.stack
+    unit, digits = unit_of(found.book, scope)
+    both = result.figure.signed and not (stack.high is None and stack.low is not None)
+    ways = ("down", "up") if both else ("up",) if c.end == "high" else ("down",)
+    pushes = [p for p in result.figure.pushes() if any(p.up if way == "up" else p.down for way in ways)]
+    ordered = sorted(pushes, key=lambda p: (-max(abs(p.up), abs(p.down)), p.cause.key))
+    base = c.base if result.figure.signed else 0.0
+    pieces: list[Piece] = []
+    if c.base and not result.figure.signed:
+        pieces.append(Piece(1, _base_in_words(stack.require.what), 0.0, c.base))
+    shown = ordered if len(ordered) <= MOST_CAUSES else ordered[: MOST_CAUSES - 1]
+    for push in shown:
+        said = cause_in_words(push.cause.key) + how_known(push.cause, found.loaded)
+        pieces.append(Piece(len(pieces) + 1, said, push.down, push.up, _is_measured(push.cause)))
+    if rest := ordered[len(shown) :]:
+        down, up = sum(p.down for p in rest), sum(p.up for p in rest)
+        pieces.append(Piece(len(pieces) + 1, f"{len(rest)} more", down, up))
+    return Bar(scope, result, base, tuple(pieces), ways, unit, digits)
+
+
+def _is_measured(cause: Cause) -> bool:
+    return cause.mode == "measured"
+
+
+def _base_in_words(what: str) -> str:
+    """What a figure is made of before any cause moves it."""
+    if what == "mid-plane":
+        return "what the drawn sizes themselves miss by"
+    if "pitch" in what or what.startswith("index") or what == "on-workpiece":
+        return "what is known of the division, as of rounded settings"
+    return "what is known beforehand"
+
+
+# -- the sheet -------------------------------------------------------------------------------------------------------
+
+
+@record
+class _Scale:
+    """From the unit of a figure to mm of paper."""
+
+    low: float
+    high: float
+
+    def x(self, value: float) -> float:
+        share = (value - self.low) / (self.high - self.low)
+        return LEFT + min(max(share, 0.0), 1.0) * (RIGHT - LEFT)
+
+
+def _scale(bar: Bar) -> _Scale:
+    """From zero to the limit or past it; between two limits, and where the value is far from zero, from a little below."""
+    c = bar.result.combined
+    seen = [*bar.limits, bar.base, *_lane_ends(bar)]
+    seen += [c.worst.high, c.likely.high] if "up" in bar.ways else []
+    seen += [c.worst.low, c.likely.low] if "down" in bar.ways else []
+    low, high = min(seen), max(seen)
+    if "down" not in bar.ways or (low >= 0.0 and low < 0.4 * high):
+        low = min(low, 0.0)
+    if high <= low:
+        high = low + 1.0
+    edge = 0.04 * (high - low)
+    return _Scale(low if low == 0.0 else low - edge, high + edge)
+
+
+def _lane_ends(bar: Bar) -> list[float]:
+    """The farthest the bar goes on each way, before what takes away."""
+    ends = []
+    if "up" in bar.ways:
+        ends.append(bar.base + sum(max(p.up, 0.0) for p in bar.pieces))
+    if "down" in bar.ways:
+        ends.append(bar.base - sum(max(p.down, 0.0) for p in bar.pieces))
+    return ends
+
+
+def _closed(found: Review, bar: Bar) -> str:
+    scale, result = _scale(bar), bar.result
+    title = f"{result.stack.index + 1}  {title_of(bar.scope)}"
+    parts = [words((LEFT, 7.0), short(title, RIGHT - LEFT, 4.0), size=4.0, bold=True)]
+    parts += _judged(bar)
+    parts += _limits(bar, scale)
+    parts += _bars(bar, scale)
+    y = BAR_TOP + BAR + 2.0
+    if any((p.up if w == "up" else p.down) < 0.0 for p in bar.pieces for w in bar.ways):
+        y += 4.0
+    more, y = _numbers(bar, scale, y)
+    parts += more
+    more, y = _spans(bar, scale, y, found.loaded.job.confidence)
+    parts += more
+    more, y = _sentences(bar, y + 2.0, inches=found.book.inches)
+    parts += more
+    return picture(WIDEST, y + 1.0, title=title, parts=parts) + "\n"
+
+
+def _judged(bar: Bar) -> list[str]:
+    """The worst case on its limit, as the review says it, and how far inside or outside that is."""
+    margin = bar.result.margin
+    text = f"worst case {limits_in_words(bar.result, bar.unit, bar.digits)}"
+    if bar.result.stack.require.what.startswith("contact"):
+        text = limits_in_words(bar.result, bar.unit, bar.digits)
+    if margin is None:
+        return [words((LEFT, 13.0), short(text, RIGHT - LEFT, 3.4), size=3.4)]
+    said = f"inside by {show(margin, bar.unit, bar.digits)}" if margin >= 0.0 else _outside(bar, -margin)
+    room_left = RIGHT - LEFT - room(said, 3.4) - 4.0
+    return [
+        words((LEFT, 13.0), short(text, room_left, 3.4), size=3.4),
+        words((RIGHT, 13.0), said, size=3.4, anchor="end", bold=margin < 0.0),
+    ]
+
+
+def _outside(bar: Bar, by: float) -> str:
+    c, s = bar.result.combined, bar.result.stack
+    short_of = s.low is not None and (s.high is None or s.low - c.worst.low >= c.worst.high - s.high)
+    return f"{'short' if short_of else 'over'} by {show(by, bar.unit, bar.digits)}"
+
+
+def _limits(bar: Bar, scale: _Scale) -> list[str]:
+    """Heavy lines with their values; where one is passed, the way past it as an arrow over the bar."""
+    s, c = bar.result.stack, bar.result.combined
+    both = s.low is not None and s.high is not None
+    parts = []
+    taken: list[tuple[float, float]] = []
+    for value, name in ((s.low, "at least"), (s.high, "at most")):
+        if value is None:
+            continue
+        x = scale.x(value)
+        parts.append(line((x, BAR_TOP - 3.5), (x, BAR_TOP + BAR + 1.5), width=LIMIT_LINE))
+        text = f"{name if both or s.high is None else 'limit'} {show(value, bar.unit, bar.digits)}"
+        start = _clear(x, room(text, SIZE), taken)
+        parts.append(words((start, BAR_TOP - 4.5), text, bold=True))
+        taken.append((start, start + room(text, SIZE)))
+    passed = [(s.high, c.worst.high)] if s.high is not None and c.worst.high > s.high else []
+    passed += [(s.low, c.worst.low)] if s.low is not None and c.worst.low < s.low else []
+    for limit, worst in passed:
+        a, b = scale.x(limit), scale.x(worst)
+        if abs(b - a) < 0.6:
+            continue
+        y, tip = BAR_TOP - 1.6, min(2.2, abs(b - a))
+        back = b - tip if b > a else b + tip
+        parts.append(line((a, y), (back, y), width=1.0))
+        parts.append(polygon([(b, y), (back, y - 1.2), (back, y + 1.2)]))
+    return parts
+
+
+def _clear(x: float, wide: float, taken: Sequence[tuple[float, float]]) -> float:
+    """Where a text about x begins: on the sheet, and right of what is taken."""
+    start = min(max(x - wide / 2.0, 2.0), WIDEST - 2.0 - wide)
+    for low, high in taken:
+        if start < high + 2.0 and low < start + wide + 2.0:
+            start = high + 2.0
+            if start + wide > WIDEST - 2.0:
+                start = low - 2.0 - wide
+    return start
+
+
+def _bars(bar: Bar, scale: _Scale) -> list[str]:
+    parts = []
+    for piece, a, b, lane in _laid(bar):
+        x, wide = min(scale.x(a), scale.x(b)), abs(scale.x(b) - scale.x(a))
+        y, high = (BAR_TOP, BAR) if not lane else (BAR_TOP + BAR + 1.0, 3.0)
+        parts.append(box(x, y, wide, high, fill=_fill(piece)))
+        if piece.measured:
+            parts.append(line((x, y + high - 0.5), (x + wide, y + high - 0.5), width=1.0))
+    axis = BAR_TOP + BAR
+    parts.append(line((LEFT, axis), (RIGHT, axis), width=THICK))
+    zero = scale.x(bar.base)
+    parts.append(line((zero, BAR_TOP - 1.5), (zero, axis + 1.5), width=THICK))
+    if not bar.pieces:  # a value that no cause moves: a diamond on the scale
+        x = scale.x(bar.base)
+        y = BAR_TOP + BAR / 2.0
+        parts.append(polygon([(x, y - 2.5), (x + 1.8, y), (x, y + 2.5), (x - 1.8, y)]))
+    return parts
+
+
+def _fill(piece: Piece) -> str:
+    return GREYS[(piece.number - 1) % len(GREYS)]
+
+
+def _laid(bar: Bar) -> Iterator[tuple[Piece, float, float, int]]:
+    """(piece, from, to, lane): outwards from the base, biggest first; what takes away goes back in a lane of its own."""
+    for way in bar.ways:
+        sign = 1.0 if way == "up" else -1.0
+        sizes = [(p, p.up if way == "up" else p.down) for p in bar.pieces]
+        at = bar.base
+        for lane, wanted in ((0, True), (1, False)):
+            for piece, size in sizes:
+                if size and (size > 0.0) == wanted:
+                    yield piece, at, at + sign * size, lane
+                    at += sign * size
+
+
+def _numbers(bar: Bar, scale: _Scale, y: float) -> tuple[list[str], float]:
+    """Each piece's number: in it where it is wide enough, else under the bar, led to its piece; and where that ends."""
+    parts, narrow = [], []
+    for piece, a, b, lane in _laid(bar):
+        x, wide = (scale.x(a) + scale.x(b)) / 2.0, abs(scale.x(b) - scale.x(a))
+        text = str(piece.number)
+        if wide > room(text, SIZE) + 1.6 and not lane and _off_limits(bar, scale, x, room(text, SIZE)):
+            parts.append(words((x, BAR_TOP + BAR / 2.0 + 1.05), text, anchor="middle"))
+        else:
+            narrow.append((x, text, BAR_TOP + BAR + (4.0 if lane else 0.0)))
+    if not narrow:
+        return parts, y
+    narrow.sort()
+    places = _apart([x for x, _, _ in narrow], 4.6)
+    for place, (x, text, foot) in zip(places, narrow, strict=True):
+        parts.append(line((x, foot), (place, y + 2.2)))
+        parts.append(words((place, y + 5.0), text, anchor="middle"))
+    return parts, y + 5.5
+
+
+def _off_limits(bar: Bar, scale: _Scale, x: float, wide: float) -> bool:
+    """No limit line goes through a number in the bar."""
+    marks = [*bar.limits, bar.base]
+    return all(abs(scale.x(value) - x) > wide / 2.0 + 0.6 for value in marks)
+
+
+def _apart(wanted: Sequence[float], gap: float) -> list[float]:
+    """Places in the order wanted, at least a gap apart, all on the sheet."""
+    places: list[float] = []
+    for x in wanted:
+        places.append(max(x, places[-1] + gap) if places else max(x, LEFT))
+    over = places[-1] - RIGHT
+    for i in range(len(places) - 1, -1, -1):
+        most = RIGHT if i == len(places) - 1 else places[i + 1] - gap
+        places[i] = min(places[i], most) if over > 0.0 else places[i]
+    return places
+
+
+def _spans(bar: Bar, scale: _Scale, y: float, confidence: float) -> tuple[list[str], float]:
+    """Worst case, drawn values and rss as lines from the base (or from end to end), each with its words."""
+    if not bar.pieces:
+        return [], y
+    parts = []
+    c, per_cent = bar.result.combined, f"{confidence * 100:g}"
+    rows = (("worst case", c.worst, 0.5), (f"{per_cent} in 100 draws", c.likely, THICK), ("rss", c.rss, THIN))
+    both = len(bar.ways) == 2
+    for name, ends, width in rows:
+        y += ROW
+        low = ends.low if "down" in bar.ways else bar.base
+        high = ends.high if "up" in bar.ways else bar.base
+        told = (
+            f"{in_unit(low, bar.unit, bar.digits)} to {show(high, bar.unit, bar.digits)}"
+            if both
+            else show(high if "up" in bar.ways else low, bar.unit, bar.digits)
+        )
+        parts += _span(scale.x(low), scale.x(high), y - 1.0, f"{name} {told}", width, bar.ways)
+    return parts, y
+
+
+def _span(a: float, b: float, y: float, text: str, width: float, ways: Sequence[str]) -> list[str]:
+    """A line with its ends marked, and its words where they find room: right of it, left of it, else on a gap in it."""
+    parts, wide = [], room(text, SIZE)
+    at, anchor = b + 2.0, "start"
+    if b + 2.0 + wide > WIDEST - 1.0:
+        at, anchor = a - 2.0, "end"
+        if a - 2.0 - wide < 1.0:
+            at, anchor = min(max((a + b) / 2.0, wide / 2.0 + 1.0), WIDEST - 1.0 - wide / 2.0), "middle"
+    if anchor == "middle":
+        left, right = at - wide / 2.0 - 1.0, at + wide / 2.0 + 1.0
+        parts += [line((a, y), (left, y), width=width)] if left > a else []
+        parts += [line((right, y), (b, y), width=width)] if right < b else []
+    else:
+        parts.append(line((a, y), (b, y), width=width))
+    if not (anchor == "middle" and (at - wide / 2.0 - 0.3 <= a or at + wide / 2.0 + 0.3 >= b)):
+        parts += [line((x, y - 1.2), (x, y + 1.2), width=width) for x in ((a, b) if len(ways) == 2 else (_tip(a, b, ways),))]
+    parts.append(words((at, y + 1.0), text, anchor=anchor))
+    return parts
+
+
+def _tip(a: float, b: float, ways: Sequence[str]) -> float:
+    return b if "up" in ways else a
+
+
+def _sentences(bar: Bar, y: float, *, inches: bool) -> tuple[list[str], float]:
+    """What each piece is, how much, and how much of the limit; with the fill and number of its piece."""
+    parts = []
+    unit, digits = finer(bar.unit, inches=inches)
+    of, scale = _share_of(bar)
+    for piece in bar.pieces:
+        size = piece.size
+        if len(bar.ways) == 2 and abs(piece.up - piece.down) > 1e-9 * max(abs(piece.up), abs(piece.down)):
+            told = f"{show(piece.up, unit, digits)} up, {show(piece.down, unit, digits)} down"
+        else:
+            told = show(abs(size), unit, digits) + (" both ways" if len(bar.ways) == 2 else "")
+        if size < 0.0:
+            told += ", which it takes away"
+        elif scale > 0.0:
+            told += f", {size / scale * 100.0:.0f} % of {of}"
+        lines = _sentence(piece.said, told)
+        y += ROW
+        parts.append(box(LEFT, y - 2.7, 4.0, 3.2, fill=_fill(piece)))
+        if piece.measured:
+            parts.append(line((LEFT, y), (LEFT + 4.0, y), width=1.0))
+        parts.append(words((LEFT + 9.0, y), str(piece.number), anchor="end"))
+        for i, text in enumerate(lines):
+            y += ROW - 0.6 if i else 0.0
+            parts.append(words((LEFT + 11.0, y), text))
+    if not bar.pieces:
+        y += ROW
+        said = "nothing adds, both share all their errors" if not bar.limits or not bar.base else "one value, no causes"
+        parts.append(words((LEFT, y), said))
+    return parts, y + 1.5
+
+
+def _sentence(said: str, told: str) -> list[str]:
+    """Cause and size in at most two lines; a long cause is cut, its size never."""
+    wide = WIDEST - LEFT - 13.0
+    whole = f"{said}: {told}"
+    if room(whole, SIZE) <= wide:
+        return [whole]
+    if room(told, SIZE) + 12.0 > wide:
+        return [short(said, wide), short(told, wide)]
+    lines = wrapped(whole, wide, 2)
+    return lines if lines[-1].endswith(told) else [short(said, wide), told]
+
+
+def _share_of(bar: Bar) -> tuple[str, float]:
+    """What a cause's share is counted in, in words and in the base unit; 0 where there is nothing to count in."""
+    s = bar.result.stack
+    if s.low is not None and s.high is not None:
+        return "half the span", bar.result.scale
+    if s.low is not None:
+        return "the room above the limit", bar.base - s.low
+    return "the limit", s.high or 0.0
+
+
+def _open(found: Review, scope: Scope) -> str:
+    """A requirement that cannot be told yet: what is missing, large."""
+    title = f"{stack_of(scope).index + 1}  {title_of(scope)}"
+    answer = found.book.get("stack.combined", scope)
+    missing, because = (answer.missing, answer.because) if isinstance(answer, Open) else ((), "")
+    parts = [
+        words((LEFT, 7.0), short(title, RIGHT - LEFT, 4.0), size=4.0, bold=True),
+        words((LEFT, 17.0), "Cannot tell: a number is missing", size=6.0, bold=True),
+    ]
+    y = 19.0
+    if because:
+        for text in wrapped(because, RIGHT - LEFT, 3, 4.0):
+            y += 6.0
+            parts.append(words((LEFT, y), text, size=4.0))
+    for path in missing[:5]:
+        y += 6.5
+        parts.append(words((LEFT, y), short(f"fill {path}", RIGHT - LEFT, 4.5), size=4.5))
+    if len(missing) > 5:
+        y += 6.0
+        parts.append(words((LEFT, y), f"and {len(missing) - 5} more", size=4.0))
+    return picture(WIDEST, y + 5.0, title=title, parts=parts) + "\n"
