@@ -78,3 +78,8 @@ def path(points: Iterable[Point], *, width: float, dashes: str = "") -> str:
     steps = [f"{number(x)} {number(y)}" for x, y in points]
     more: dict[str, str | float] = {"stroke_dasharray": dashes} if dashes else {}
     return tag("path", d="M" + "L".join(steps), fill="none", stroke="black", stroke_width=width, **more)
+
+
+def outlined(boxes: Iterable[str], *, stroke: float = 0.13) -> str:
+    """Shapes without outlines of their own, outlined alike: shorter than saying it at each of them [mm of paper]."""
+    return tag("g", "".join(boxes), stroke="black", stroke_width=stroke)

@@ -17,7 +17,7 @@ from setupcheck.quantities.scopes import stack_of
 from setupcheck.record import record
 from setupcheck.report.causes import cause_in_words
 from setupcheck.report.pictures import WIDEST, Picture
-from setupcheck.report.pictures.fitting import SIZE, box, short, wrapped
+from setupcheck.report.pictures.fitting import SIZE, box, outlined, short, wrapped
 from setupcheck.report.rests import how_known
 from setupcheck.report.svg import THICK, THIN, line, picture, polygon, room, words
 from setupcheck.report.text import limits_in_words
@@ -226,6 +226,11 @@ def _limits(bar: Bar, scale: _Scale) -> list[str]:
         start = _clear(x, room(text, SIZE), taken)
         parts.append(words((start, BAR_TOP - 4.5), text, bold=True))
         taken.append((start, start + room(text, SIZE)))
+    text = "0" if bar.base == 0.0 else f"without errors {show(bar.base, bar.unit, bar.digits)}"
+    if bar.pieces:
+        start = _clear(scale.x(bar.base), room(text, SIZE), taken)
+        free = all(start >= high + 1.0 or start + room(text, SIZE) <= low - 1.0 for low, high in taken)
+        parts += [words((start, BAR_TOP - 4.5), text)] if free and start >= 1.0 else []
     passed = [(s.high, c.worst.high)] if s.high is not None and c.worst.high > s.high else []
     passed += [(s.low, c.worst.low)] if s.low is not None and c.worst.low < s.low else []
     for limit, worst in passed:
@@ -251,13 +256,15 @@ def _clear(x: float, wide: float, taken: Sequence[tuple[float, float]]) -> float
 
 
 def _bars(bar: Bar, scale: _Scale) -> list[str]:
-    parts = []
+    pieces: list[str] = []
+    parts: list[str] = []
     for piece, a, b, lane in _laid(bar):
         x, wide = min(scale.x(a), scale.x(b)), abs(scale.x(b) - scale.x(a))
         y, high = (BAR_TOP, BAR) if not lane else (BAR_TOP + BAR + 1.0, 3.0)
-        parts.append(box(x, y, wide, high, fill=_fill(piece)))
+        pieces.append(box(x, y, wide, high, fill=_fill(piece), stroke=0.0))
         if piece.measured:
             parts.append(line((x, y + high - 0.5), (x + wide, y + high - 0.5), width=1.0))
+    parts = [outlined(pieces), *parts] if pieces else parts
     axis = BAR_TOP + BAR
     parts.append(line((LEFT, axis), (RIGHT, axis), width=THICK))
     zero = scale.x(bar.base)
@@ -328,12 +335,11 @@ def _spans(bar: Bar, scale: _Scale, y: float, confidence: float) -> tuple[list[s
     """Worst case, drawn values and rss as lines from the base (or from end to end), each with its words."""
     if not bar.pieces:
         return [], y
-    parts = []
+    parts: list[str] = []
     c, per_cent = bar.result.combined, f"{confidence * 100:g}"
     rows = (("worst case", c.worst, 0.5), (f"{per_cent} in 100 draws", c.likely, THICK), ("rss", c.rss, THIN))
     both = len(bar.ways) == 2
     for name, ends, width in rows:
-        y += ROW
         low = ends.low if "down" in bar.ways else bar.base
         high = ends.high if "up" in bar.ways else bar.base
         told = (
@@ -341,28 +347,34 @@ def _spans(bar: Bar, scale: _Scale, y: float, confidence: float) -> tuple[list[s
             if both
             else show(high if "up" in bar.ways else low, bar.unit, bar.digits)
         )
-        parts += _span(scale.x(low), scale.x(high), y - 1.0, f"{name} {told}", width, bar.ways)
+        more, y = _span(scale.x(low), scale.x(high), y + ROW, f"{name} {told}", width, bar.ways)
+        parts += more
     return parts, y
 
 
-def _span(a: float, b: float, y: float, text: str, width: float, ways: Sequence[str]) -> list[str]:
-    """A line with its ends marked, and its words where they find room: right of it, left of it, else on a gap in it."""
-    parts, wide = [], room(text, SIZE)
-    at, anchor = b + 2.0, "start"
-    if b + 2.0 + wide > WIDEST - 1.0:
-        at, anchor = a - 2.0, "end"
-        if a - 2.0 - wide < 1.0:
-            at, anchor = min(max((a + b) / 2.0, wide / 2.0 + 1.0), WIDEST - 1.0 - wide / 2.0), "middle"
-    if anchor == "middle":
-        left, right = at - wide / 2.0 - 1.0, at + wide / 2.0 + 1.0
-        parts += [line((a, y), (left, y), width=width)] if left > a else []
-        parts += [line((right, y), (b, y), width=width)] if right < b else []
+def _span(
+    a: float, b: float, y: float, text: str, width: float, ways: Sequence[str]
+) -> tuple[list[str], float]:
+    """A line with its ends marked, and its words where they find room: right of it, left of it, in a gap, else above it.
+
+    y  base line of its words [mm of paper]; what comes back is where the next one may begin
+    """
+    wide, level = room(text, SIZE), y - 1.0
+    ends = (a, b) if len(ways) == 2 else (_tip(a, b, ways),)
+    if b + 2.0 + wide <= WIDEST - 1.0:
+        at, anchor, drawn = b + 2.0, "start", [(a, b)]
+    elif a - 2.0 - wide >= 1.0:
+        at, anchor, drawn = a - 2.0, "end", [(a, b)]
+    elif b - a > wide + 12.0:
+        at, anchor = (a + b) / 2.0, "middle"
+        drawn = [(a, at - wide / 2.0 - 1.0), (at + wide / 2.0 + 1.0, b)]
     else:
-        parts.append(line((a, y), (b, y), width=width))
-    if not (anchor == "middle" and (at - wide / 2.0 - 0.3 <= a or at + wide / 2.0 + 0.3 >= b)):
-        parts += [line((x, y - 1.2), (x, y + 1.2), width=width) for x in ((a, b) if len(ways) == 2 else (_tip(a, b, ways),))]
-    parts.append(words((at, y + 1.0), text, anchor=anchor))
-    return parts
+        at, anchor, drawn = min(max((a + b) / 2.0, wide / 2.0 + 1.0), WIDEST - 1.0 - wide / 2.0), "middle", [(a, b)]
+        level = y + 2.4
+    parts = [words((at, y), text, anchor=anchor)]
+    parts += [line((one, level), (other, level), width=width) for one, other in drawn]
+    parts += [line((x, level - 1.2), (x, level + 1.2), width=width) for x in ends]
+    return parts, max(y, level + 1.0)
 
 
 def _tip(a: float, b: float, ways: Sequence[str]) -> float:
@@ -371,7 +383,8 @@ def _tip(a: float, b: float, ways: Sequence[str]) -> float:
 
 def _sentences(bar: Bar, y: float, *, inches: bool) -> tuple[list[str], float]:
     """What each piece is, how much, and how much of the limit; with the fill and number of its piece."""
-    parts = []
+    swatches: list[str] = []
+    parts: list[str] = []
     unit, digits = finer(bar.unit, inches=inches)
     of, scale = _share_of(bar)
     for piece in bar.pieces:
@@ -386,7 +399,7 @@ def _sentences(bar: Bar, y: float, *, inches: bool) -> tuple[list[str], float]:
             told += f", {size / scale * 100.0:.0f} % of {of}"
         lines = _sentence(piece.said, told)
         y += ROW
-        parts.append(box(LEFT, y - 2.7, 4.0, 3.2, fill=_fill(piece)))
+        swatches.append(box(LEFT, y - 2.7, 4.0, 3.2, fill=_fill(piece), stroke=0.0))
         if piece.measured:
             parts.append(line((LEFT, y), (LEFT + 4.0, y), width=1.0))
         parts.append(words((LEFT + 9.0, y), str(piece.number), anchor="end"))
@@ -397,7 +410,7 @@ def _sentences(bar: Bar, y: float, *, inches: bool) -> tuple[list[str], float]:
         y += ROW
         said = "nothing adds, both share all their errors" if not bar.limits or not bar.base else "one value, no causes"
         parts.append(words((LEFT, y), said))
-    return parts, y + 1.5
+    return [outlined(swatches), *parts] if swatches else parts, y + 1.5
 
 
 def _sentence(said: str, told: str) -> list[str]:
