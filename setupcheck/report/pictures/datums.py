@@ -18,7 +18,7 @@ from setupcheck.report.wording import clean
 
 LABEL, FIELD, EDGE = 37.5, 43.0, 178.0
 """Right edge of the labels, and both edges of the field of surfaces [mm of paper]. Source: our choice."""
-FEWEST, MOST = 6, 10
+FEWEST, MOST = 6, 7
 """Lanes side by side. Source: our choice; more than the larger number leaves no room for names."""
 HEAVY = 0.8
 """Width of the lines of the way between teeth and bore [mm of paper]. Source: our choice."""
@@ -181,10 +181,11 @@ def _lanes(sheet: Sheet) -> None:
     for i, band in enumerate(sheet.bands):
         if passing[i] + len(band.made) > MOST:
             leaves = [n for n in band.made if ending[n] == i and n not in sheet.marks and n not in sheet.chain]
-            gone = leaves[max(len(leaves) - (passing[i] + len(band.made) - MOST + 1), 0) :]
+            over = passing[i] + len(band.made) - MOST + (1 if band.at else 0)
+            gone = leaves[max(len(leaves) - over, 0) :]
             band.made = [n for n in band.made if n not in gone]
             band.more = len(gone)
-    needed = [passing[i] + len(b.made) + (1 if b.more else 0) for i, b in enumerate(sheet.bands)]
+    needed = [passing[i] + len(b.made) + (1 if b.more and b.at else 0) for i, b in enumerate(sheet.bands)]
     sheet.lanes = max([FEWEST, *needed])
     taken: dict[int, Node] = {}
     before: dict[tuple[str, str], int] = {}
@@ -248,7 +249,7 @@ def _band(sheet: Sheet, band: Band) -> list[str]:
             parts += _held(sheet, band, node, row)
     for node in band.slots:
         parts += _node(sheet, band, node)
-    if band.more:
+    if band.more and band.at:
         free = [s for s in range(sheet.lanes) if s not in band.slots.values() and s not in _passing(sheet, band)]
         at = sheet.left(free[-1]) if free else EDGE - 12.0
         parts.append(words((at, band.bar + 6.0), short(f"+{band.more} more", sheet.wide)))
@@ -259,12 +260,13 @@ def _label(sheet: Sheet, band: Band) -> list[str]:
     y = band.bar - 3.4 if band.at else band.top
     heavy = HEAVY if band.at and band.at in sheet.chain else 0.2
     frame = box(6.0, y, LABEL - 6.0, 8.4, stroke=heavy)
+    under = f"{band.under}, +{band.more} more" if band.more and not band.at else band.under
     if not band.at:
         frame = frame.replace("/>", ' stroke-dasharray="1.2 0.9"/>')
     return [
         frame,
         words((7.4, y + 3.6), short(band.label, LABEL - 8.8), bold=True),
-        words((7.4, y + 7.3), short(band.under, LABEL - 8.8)),
+        words((7.4, y + 7.3), short(under, LABEL - 8.8)),
     ]
 
 
@@ -326,19 +328,13 @@ def _held(sheet: Sheet, band: Band, node: Node, row: Row) -> list[str]:
         parts += [line((lane, turn), (x, turn), width=width), line((x, turn), (x, band.bar - 1.8), width=width)]
         if heavy:
             parts.append(line((lane, start), (lane, turn), width=width))
-    elif heavy and above:
-        parts += [
-            line((lane, _bottom(sheet, home, node)), (lane, start), width=width),
-        ]
-    elif not above and x == lane:
-        pass
-    if heavy and above and x > lane:
+    if heavy and above:
         parts.append(line((lane, _bottom(sheet, home, node)), (lane, start), width=width))
     parts.append(polygon([(x, band.bar), (x - 0.9, band.bar - 2.2), (x + 0.9, band.bar - 2.2)]))
     slot = home.slots[node]
     for i, role in enumerate(row.held[node][: band.lines]):
         y = band.bar - 1.4 - LINE * (len(row.held[node]) - 1 - i)
-        text = short(ROLES.get(role, role), sheet.left(slot) + sheet.wide - x - 1.4)
+        text = short(ROLES.get(role, role), min(sheet.lane(slot) + sheet.wide, WIDEST - 0.5) - 0.8 - x - 1.4)
         parts.append(words((x + 1.4, y), text))
     return parts
 
