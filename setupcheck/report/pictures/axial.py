@@ -7,10 +7,10 @@ each length as its worst case. Right is +z of the body the parts are by then.
 from __future__ import annotations
 
 from collections.abc import Iterator
+from itertools import pairwise
 
 from setupcheck.flow import Review
 from setupcheck.jobfile.models import Dimension
-from setupcheck.jobfile.names import Ref
 from setupcheck.ledger.figures import Length
 from setupcheck.ledger.route import State
 from setupcheck.quantities.book import Open
@@ -82,7 +82,9 @@ def offered(found: Review) -> Iterator[Picture]:
     """`axial` of a job with a worm's axis; else one for each required length."""
     place = found.loaded.job.place
     if place is not None and place.worm_axis is not None and found.loaded.job.mesh is not None:
-        yield Picture("axial", "the lengths that bring the teeth to the worm's axis", lambda: _draw(_to_the_worm(found)))
+        yield Picture(
+            "axial", "the lengths that bring the teeth to the worm's axis", lambda: _draw(_to_the_worm(found))
+        )
         return
     for scope in found.book.instances("stack"):
         stack = stack_of(scope)
@@ -111,11 +113,12 @@ def _to_the_worm(found: Review) -> Along:
     given = job.place.worm_axis.length
     worm = face.z + face.facing * middle(given)
     planes, stretches = _stops(floor, teeth, face)
-    planes = [_face(floor, face), *planes, Plane(teeth.z, f"middle of {clean(teeth.name)}"), Plane(worm, "worm's axis", below=True)]
+    middle_of = f"middle of {clean(teeth.name)}"
+    planes = [_face(floor, face), *planes, Plane(teeth.z, middle_of), Plane(worm, "worm's axis", below=True)]
     told = f"{_size(floor, given)}, given"
     stretches.insert(0, Stretch(face.z, worm, f"{clean(face.name)} to worm's axis", told))
     near = _own_stop(floor, teeth, face) or face
-    stretches.append(_between(floor, near, teeth, f"{clean(near.name)} to middle of {clean(teeth.name)}"))
+    stretches.append(_between(floor, near, teeth, f"{clean(near.name)} to {middle_of}"))
     return Along(title, _once(planes), tuple(stretches), tuple(_miss(found, teeth.z - worm)))
 
 
@@ -151,7 +154,9 @@ def _stops(floor: Floor, one: State, other: State) -> tuple[list[Plane], list[St
         planes += [_face(floor, against), _face(floor, on)]
         if names:
             side = f"between {clean(against.name)} and {clean(on.name)}"
-            stretches.append(Stretch(against.z, on.z, f"{clean(' and '.join(names))} {side}", ", ".join(values), spacer=True))
+            stretches.append(
+                Stretch(against.z, on.z, f"{clean(' and '.join(names))} {side}", ", ".join(values), spacer=True)
+            )
     return planes, stretches
 
 
@@ -222,7 +227,9 @@ def _size(floor: Floor, given: Dimension) -> str:
         return f"{floor.size(given.measured)}{tail} measured"
     assert given.nominal is not None
     if given.lower is None and given.upper is None:
-        return f"{floor.size(given.nominal)} {given.fit}" if given.fit else f"{floor.size(given.nominal)} without limits"
+        return (
+            f"{floor.size(given.nominal)} {given.fit}" if given.fit else f"{floor.size(given.nominal)} without limits"
+        )
     low, high = given.lower or 0.0, given.upper or 0.0
     if abs(low + high) < 1e-9:
         return f"{_bare(floor, given.nominal)} ±{floor.size(high)}"
@@ -331,7 +338,7 @@ def _blocks(along: Along, scale: _Scale, top: float) -> list[str]:
         inset = 3.0 * (i % 2)
         parts.append(box(low, top + inset, high - low, BODY - 2.0 * inset, fill=GREYS[i % 2], stroke=THIN))
         edges = [low, *(x for x in marks if low < x < high), high]
-        gap, start = max((b - a, -a) for a, b in zip(edges, edges[1:], strict=False))
+        gap, start = max((b - a, -a) for a, b in pairwise(edges))
         name = short(part, 40.0)
         if gap > room(name, SIZE) + 1.0:
             parts.append(words((gap / 2.0 - start, top + BODY / 2.0 + 1.0), name, anchor="middle"))

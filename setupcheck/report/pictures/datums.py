@@ -11,7 +11,7 @@ from collections.abc import Iterator
 from setupcheck.flow import Review
 from setupcheck.record import record
 from setupcheck.report.pictures import TALLEST, WIDEST, Picture
-from setupcheck.report.pictures.fitting import SIZE, box, short, spans, wrapped
+from setupcheck.report.pictures.fitting import box, short, spans, wrapped
 from setupcheck.report.pictures.routes import Node, Route, Row, ends, holding, route_of, transfers, way
 from setupcheck.report.svg import THICK, line, picture, polygon, words
 from setupcheck.report.wording import clean
@@ -177,7 +177,9 @@ def _lanes(sheet: Sheet) -> None:
         for node in band.made:
             uses = [j for j, b in enumerate(sheet.bands) if b.at and node in sheet.route.rows[b.at].held]
             ending[node] = max(uses, default=i)
-    passing = [sum(1 for j, b in enumerate(sheet.bands) for n in b.made if j < i < ending[n]) for i in range(len(sheet.bands))]
+    passing = [
+        sum(1 for j, b in enumerate(sheet.bands) for n in b.made if j < i < ending[n]) for i in range(len(sheet.bands))
+    ]
     for i, band in enumerate(sheet.bands):
         if passing[i] + len(band.made) > MOST:
             leaves = [n for n in band.made if ending[n] == i and n not in sheet.marks and n not in sheet.chain]

@@ -1,4 +1,4 @@
-"""The route as a graph of datums: which operation made each surface, and which surfaces each operation hangs on. No paper here."""
+"""The route as a graph of datums: which operation made each surface, and which surfaces it hangs on. No paper here."""
 
 from __future__ import annotations
 
@@ -173,7 +173,7 @@ def way(route: Route, start: Node, goal: Node) -> list[Node | int] | None:
     holding too, its number below zero.  Source: derived here.
     """
     seen: dict[tuple[Node | int, bool], tuple[Node | int, bool] | None] = {(start, False): None}
-    queue = deque([(start, False)])
+    queue: deque[tuple[Node | int, bool]] = deque([(start, False)])
     while queue:
         here = queue.popleft()
         if here[0] == goal:

@@ -9,7 +9,6 @@ from __future__ import annotations
 from collections.abc import Iterator, Sequence
 
 from setupcheck.flow import Review
-from setupcheck.ledger.causes import Cause
 from setupcheck.notation import show
 from setupcheck.quantities.book import Open, Scope
 from setupcheck.quantities.judged import Result
@@ -31,7 +30,7 @@ LEFT, RIGHT = 6.0, 174.0
 """Where the scale begins and ends [mm of paper]. Source: our choice."""
 BAR_TOP, BAR = 25.0, 7.0
 """Upper edge and height of the bar [mm of paper]. Source: our choice."""
-GREYS = ("#ffffff", "#bbbbbb", "#e4e4e4", "#999999", "#d0d0d0", "#f2f2f2", "#adadad")
+GREYS = ("#ffffff", "#bbbbbb", "#e4e4e4", "#999999", "#d0d0d0", "#f2f2f2", "#adadad", "#dadada")
 """Fills of the pieces in their order; neighbours differ in black and white too. Source: our choice."""
 LIMIT_LINE = 0.9
 """Width of the line of a limit [mm of paper], which no piece may be taken for. Source: our choice."""
@@ -43,14 +42,19 @@ ROW = 4.6
 class Piece:
     """One cause in the bar: how far it moves the figure down and up [base unit of the figure]; negative where it takes away.
 
-    number  links piece and sentence;  measured  somebody has read it at the machine
+    number  links piece and sentence;  known  how its size is known, in words: measured, typical, by record, or nothing
     """
 
     number: int
     said: str
     down: float
     up: float
-    measured: bool = False
+    known: str = ""
+
+    @property
+    def measured(self) -> bool:
+        """Somebody has read it at the machine."""
+        return self.known.strip() == "measured"
 
     @property
     def size(self) -> float:
@@ -62,7 +66,7 @@ class Bar:
     """A requirement ready to draw, all values in its base unit.
 
     base   value that the causes move;  ways  "up", "down" or both: where they are drawn
-    ends   worst, likely and rss on each way drawn, as (words, from, to)
+    unit, digits  of its value, for people
     """
 
     scope: Scope
@@ -109,16 +113,12 @@ def bar_of(found: Review, scope: Scope, result: Result) -> Bar:
         pieces.append(Piece(1, _base_in_words(stack.require.what), 0.0, c.base))
     shown = ordered if len(ordered) <= MOST_CAUSES else ordered[: MOST_CAUSES - 1]
     for push in shown:
-        said = cause_in_words(push.cause.key) + how_known(push.cause, found.loaded)
-        pieces.append(Piece(len(pieces) + 1, said, push.down, push.up, _is_measured(push.cause)))
+        said, known = cause_in_words(push.cause.key), how_known(push.cause, found.loaded)
+        pieces.append(Piece(len(pieces) + 1, said, push.down, push.up, known))
     if rest := ordered[len(shown) :]:
         down, up = sum(p.down for p in rest), sum(p.up for p in rest)
         pieces.append(Piece(len(pieces) + 1, f"{len(rest)} more", down, up))
     return Bar(scope, result, base, tuple(pieces), ways, unit, digits)
-
-
-def _is_measured(cause: Cause) -> bool:
-    return cause.mode == "measured"
 
 
 def _base_in_words(what: str) -> str:
@@ -175,8 +175,8 @@ def _closed(found: Review, bar: Bar) -> str:
     title = f"{result.stack.index + 1}  {title_of(bar.scope)}"
     parts = [words((LEFT, 7.0), short(title, RIGHT - LEFT, 4.0), size=4.0, bold=True)]
     parts += _judged(bar)
-    parts += _limits(bar, scale)
     parts += _bars(bar, scale)
+    parts += _limits(bar, scale)  # over the pieces, where one of them passes it
     y = BAR_TOP + BAR + 2.0
     if any((p.up if w == "up" else p.down) < 0.0 for p in bar.pieces for w in bar.ways):
         y += 4.0
@@ -228,9 +228,8 @@ def _limits(bar: Bar, scale: _Scale) -> list[str]:
         taken.append((start, start + room(text, SIZE)))
     text = "0" if bar.base == 0.0 else f"without errors {show(bar.base, bar.unit, bar.digits)}"
     if bar.pieces:
-        start = _clear(scale.x(bar.base), room(text, SIZE), taken)
-        free = all(start >= high + 1.0 or start + room(text, SIZE) <= low - 1.0 for low, high in taken)
-        parts += [words((start, BAR_TOP - 4.5), text)] if free and start >= 1.0 else []
+        alone = _clear(scale.x(bar.base), room(text, SIZE), ())
+        parts += [words((alone, BAR_TOP - 4.5), text)] if _is_free(alone, alone + room(text, SIZE), taken) else []
     passed = [(s.high, c.worst.high)] if s.high is not None and c.worst.high > s.high else []
     passed += [(s.low, c.worst.low)] if s.low is not None and c.worst.low < s.low else []
     for limit, worst in passed:
@@ -253,6 +252,10 @@ def _clear(x: float, wide: float, taken: Sequence[tuple[float, float]]) -> float
             if start + wide > WIDEST - 2.0:
                 start = low - 2.0 - wide
     return start
+
+
+def _is_free(start: float, end: float, taken: Sequence[tuple[float, float]]) -> bool:
+    return all(start >= high + 1.5 or end <= low - 1.5 for low, high in taken)
 
 
 def _bars(bar: Bar, scale: _Scale) -> list[str]:
@@ -352,9 +355,7 @@ def _spans(bar: Bar, scale: _Scale, y: float, confidence: float) -> tuple[list[s
     return parts, y
 
 
-def _span(
-    a: float, b: float, y: float, text: str, width: float, ways: Sequence[str]
-) -> tuple[list[str], float]:
+def _span(a: float, b: float, y: float, text: str, width: float, ways: Sequence[str]) -> tuple[list[str], float]:
     """A line with its ends marked, and its words where they find room: right of it, left of it, in a gap, else above it.
 
     y  base line of its words [mm of paper]; what comes back is where the next one may begin
@@ -393,6 +394,7 @@ def _sentences(bar: Bar, y: float, *, inches: bool) -> tuple[list[str], float]:
             told = f"{show(piece.up, unit, digits)} up, {show(piece.down, unit, digits)} down"
         else:
             told = show(abs(size), unit, digits) + (" both ways" if len(bar.ways) == 2 else "")
+        told += piece.known
         if size < 0.0:
             told += ", which it takes away"
         elif scale > 0.0:
