@@ -29,9 +29,9 @@ from setupcheck.report.worked_out import filled
 
 LEFT, RIGHT, TEXT = 14.0, 104.0, 112.0
 """Edges of the field that is to scale, and where the words of the lengths begin [mm of paper]. Source: our choice."""
-TOP = 14.0
+TOP = 8.6
 """Where the names of the faces begin [mm of paper]. Source: our choice."""
-BODY = 26.0
+BODY = 20.0
 """Height of the parts [mm of paper]; they are true to scale along the axis alone. Source: our choice."""
 GREYS = ("#dddddd", "#f0f0f0")
 """Fills of the parts in turn. Source: our choice."""
@@ -195,8 +195,8 @@ def _miss(found: Review, offset: float) -> Iterator[str]:
     """By how much the middle of the teeth misses the worm's axis, and what the shim should be."""
     floor = found.floor
     figure = in_its_housing(floor)
-    side = "" if abs(offset) < 5e-7 else f", to the {'right' if offset > 0.0 else 'left'} of it"
-    text = f"Drawn sizes leave the teeth {floor.fine(abs(offset))} from the worm's axis{side}"
+    side = "" if abs(offset) < 5e-7 else f" (teeth to the {'right' if offset > 0.0 else 'left'})"
+    text = f"Drawn sizes miss the worm's axis by {floor.fine(abs(offset))}{side}"
     if isinstance(figure, Open):
         yield f"{text}; worst miss cannot be told: fill {', '.join(figure.missing[:2])}."
     else:
@@ -251,7 +251,7 @@ def _draw(along: Along) -> str:
         more, y = _body(along, y)
         parts += more
     for note in along.notes:
-        for text in wrapped(note, WIDEST - 14.0, 2):
+        for text in wrapped(note, WIDEST - 10.0, 2):
             y += 4.4
             parts.append(words((6.0, y), text))
     return picture(WIDEST, y + 3.0, title=along.title, parts=parts) + "\n"
@@ -297,7 +297,7 @@ def _body(along: Along, y: float) -> tuple[list[str], float]:
         wide = room(plane.name, SIZE)
         parts.append(words((min(max(x - wide / 2.0, 2.0), TEXT - 4.0 - wide), y), plane.name))
     for stretch in along.stretches[:MOST_ROWS]:
-        more, y = _length(scale, stretch, y + 2.0)
+        more, y = _length(scale, stretch, y + 1.4)
         parts += more
     y += 4.6
     parts.append(words((6.0, y), f"{_ratio(scale.factor)} along the axis; right is +z"))
@@ -322,7 +322,7 @@ def _names(scale: _Scale, planes: list[Plane], y: float) -> tuple[list[str], flo
         placed.append((start, name, row))
     for start, name, row in placed:
         parts.append(words((start, y + 4.0 * (row + 1)), name))
-    return parts, y + 4.0 * len(rows) + 0.6
+    return parts, y + 4.0 * len(rows) + 1.4
 
 
 def _blocks(along: Along, scale: _Scale, top: float) -> list[str]:

@@ -389,9 +389,9 @@ def _kept(sheet: Sheet) -> list[str]:
 def _legend(sheet: Sheet, left_out: int) -> list[str]:
     found = [f"{left_out} more operations find no room here."] if left_out else []
     found.append("Arrow into a bar: held on. Box under a bar: cut in that holding. Dashed: bought or stock.")
-    more = ["asked, axis of: numbers of the requirements"] if sheet.marks else []
-    more += ["double: a holding kept"] if any(row.keeps is not None for row in sheet.route.rows) else []
-    more += ["heavy: the way named above"] if sheet.chain else []
+    more = ["asked, axis of: requirements by number"] if sheet.marks else []
+    more += ["double: holding kept"] if any(row.keeps is not None for row in sheet.route.rows) else []
+    more += ["heavy: the way above"] if sheet.chain else []
     if more:
         found.append("; ".join(more) + ".")
     return found

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Iterable
 
-from setupcheck.report.svg import CHARACTER, Point, number, tag
+from setupcheck.report.svg import CHARACTER, tag
 from setupcheck.report.wording import clean
 
 SIZE = 3.0
@@ -71,13 +71,6 @@ def box(x: float, y: float, width: float, height: float, *, fill: str = "white",
     """A rectangle from its upper left corner, outlined; without an outline where `stroke` is 0 [mm of paper]."""
     line: dict[str, str | float] = {"stroke": "black", "stroke_width": stroke} if stroke else {}
     return tag("rect", x=x, y=y, width=width, height=height, fill=fill, **line)
-
-
-def path(points: Iterable[Point], *, width: float, dashes: str = "") -> str:
-    """An open line through points, shorter to write than a polyline of single lines."""
-    steps = [f"{number(x)} {number(y)}" for x, y in points]
-    more: dict[str, str | float] = {"stroke_dasharray": dashes} if dashes else {}
-    return tag("path", d="M" + "L".join(steps), fill="none", stroke="black", stroke_width=width, **more)
 
 
 def outlined(boxes: Iterable[str], *, stroke: float = 0.13) -> str:

@@ -24,17 +24,17 @@ from setupcheck.report.wording import finer, in_unit, title_of, unit_of
 
 NO_STACK = ("torque", "contact-length", "contact-area")
 """Requirements that are offered only where they have a value and a limit."""
-MOST_CAUSES = 7
+MOST_CAUSES = 6
 """Causes that get a sentence of their own. Source: our choice, for the height of the drawing."""
 LEFT, RIGHT = 6.0, 174.0
 """Where the scale begins and ends [mm of paper]. Source: our choice."""
-BAR_TOP, BAR = 25.0, 7.0
+BAR_TOP, BAR = 20.5, 6.5
 """Upper edge and height of the bar [mm of paper]. Source: our choice."""
 GREYS = ("#ffffff", "#bbbbbb", "#e4e4e4", "#999999", "#d0d0d0", "#f2f2f2", "#adadad", "#dadada")
 """Fills of the pieces in their order; neighbours differ in black and white too. Source: our choice."""
 LIMIT_LINE = 0.9
 """Width of the line of a limit [mm of paper], which no piece may be taken for. Source: our choice."""
-ROW = 4.6
+ROW = 4.2
 """Distance of two lines of text [mm of paper]. Source: our choice."""
 
 
@@ -173,7 +173,7 @@ def _lane_ends(bar: Bar) -> list[float]:
 def _closed(found: Review, bar: Bar) -> str:
     scale, result = _scale(bar), bar.result
     title = f"{result.stack.index + 1}  {title_of(bar.scope)}"
-    parts = [words((LEFT, 7.0), short(title, RIGHT - LEFT, 4.0), size=4.0, bold=True)]
+    parts = [words((LEFT, 5.8), short(title, RIGHT - LEFT, 4.0), size=4.0, bold=True)]
     parts += _judged(bar)
     parts += _bars(bar, scale)
     parts += _limits(bar, scale)  # over the pieces, where one of them passes it
@@ -196,12 +196,12 @@ def _judged(bar: Bar) -> list[str]:
     if bar.result.stack.require.what.startswith("contact"):
         text = limits_in_words(bar.result, bar.unit, bar.digits)
     if margin is None:
-        return [words((LEFT, 13.0), short(text, RIGHT - LEFT, 3.4), size=3.4)]
+        return [words((LEFT, 11.2), short(text, RIGHT - LEFT, 3.4), size=3.4)]
     said = f"inside by {show(margin, bar.unit, bar.digits)}" if margin >= 0.0 else _outside(bar, -margin)
     room_left = RIGHT - LEFT - room(said, 3.4) - 4.0
     return [
-        words((LEFT, 13.0), short(text, room_left, 3.4), size=3.4),
-        words((RIGHT, 13.0), said, size=3.4, anchor="end", bold=margin < 0.0),
+        words((LEFT, 11.2), short(text, room_left, 3.4), size=3.4),
+        words((RIGHT, 11.2), said, size=3.4, anchor="end", bold=margin < 0.0),
     ]
 
 
@@ -224,12 +224,12 @@ def _limits(bar: Bar, scale: _Scale) -> list[str]:
         parts.append(line((x, BAR_TOP - 3.5), (x, BAR_TOP + BAR + 1.5), width=LIMIT_LINE))
         text = f"{name if both or s.high is None else 'limit'} {show(value, bar.unit, bar.digits)}"
         start = _clear(x, room(text, SIZE), taken)
-        parts.append(words((start, BAR_TOP - 4.5), text, bold=True))
+        parts.append(words((start, BAR_TOP - 4.2), text, bold=True))
         taken.append((start, start + room(text, SIZE)))
     text = "0" if bar.base == 0.0 else f"without errors {show(bar.base, bar.unit, bar.digits)}"
     if bar.pieces:
         alone = _clear(scale.x(bar.base), room(text, SIZE), ())
-        parts += [words((alone, BAR_TOP - 4.5), text)] if _is_free(alone, alone + room(text, SIZE), taken) else []
+        parts += [words((alone, BAR_TOP - 4.2), text)] if _is_free(alone, alone + room(text, SIZE), taken) else []
     passed = [(s.high, c.worst.high)] if s.high is not None and c.worst.high > s.high else []
     passed += [(s.low, c.worst.low)] if s.low is not None and c.worst.low < s.low else []
     for limit, worst in passed:
@@ -406,7 +406,7 @@ def _sentences(bar: Bar, y: float, *, inches: bool) -> tuple[list[str], float]:
             parts.append(line((LEFT, y), (LEFT + 4.0, y), width=1.0))
         parts.append(words((LEFT + 9.0, y), str(piece.number), anchor="end"))
         for i, text in enumerate(lines):
-            y += ROW - 0.6 if i else 0.0
+            y += ROW - 0.5 if i else 0.0
             parts.append(words((LEFT + 11.0, y), text))
     if not bar.pieces:
         y += ROW
@@ -433,7 +433,7 @@ def _share_of(bar: Bar) -> tuple[str, float]:
     if s.low is not None and s.high is not None:
         return "half the span", bar.result.scale
     if s.low is not None:
-        return "the room above the limit", bar.base - s.low
+        return "the way to the limit", bar.base - s.low
     return "the limit", s.high or 0.0
 
 
@@ -443,7 +443,7 @@ def _open(found: Review, scope: Scope) -> str:
     answer = found.book.get("stack.combined", scope)
     missing, because = (answer.missing, answer.because) if isinstance(answer, Open) else ((), "")
     parts = [
-        words((LEFT, 7.0), short(title, RIGHT - LEFT, 4.0), size=4.0, bold=True),
+        words((LEFT, 5.8), short(title, RIGHT - LEFT, 4.0), size=4.0, bold=True),
         words((LEFT, 17.0), "Cannot tell: a number is missing", size=6.0, bold=True),
     ]
     y = 19.0

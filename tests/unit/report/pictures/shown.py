@@ -9,7 +9,6 @@ from xml.etree import ElementTree
 from setupcheck.flow import Review, review
 from setupcheck.jobfile.reading import read_job_text
 from setupcheck.report.pictures import Picture, pictures
-from setupcheck.report.svg import room
 
 SVG = "{http://www.w3.org/2000/svg}"
 ROOT = Path(__file__).resolve().parents[4]
@@ -44,7 +43,3 @@ def sheet(text: str) -> tuple[float, float]:
 def written(text: str) -> list[str]:
     """Every text of a picture, in its order."""
     return [node.text or "" for node in ElementTree.fromstring(text).iter(f"{SVG}text")]
-
-
-def wide(text: str, size: float) -> float:
-    return room(text, size)
