@@ -11,21 +11,17 @@ from collections.abc import Iterator, Sequence
 from setupcheck.flow import Review
 from setupcheck.notation import show
 from setupcheck.quantities.book import Open, Scope
-from setupcheck.quantities.judged import Result
 from setupcheck.quantities.scopes import stack_of
 from setupcheck.record import record
-from setupcheck.report.causes import cause_in_words
 from setupcheck.report.pictures import WIDEST, Picture
 from setupcheck.report.pictures.fitting import SIZE, box, outlined, short, wrapped
-from setupcheck.report.rests import how_known
+from setupcheck.report.pictures.stack_bars import Bar, Piece, bar_of, laid, lane_ends, share_of
 from setupcheck.report.svg import THICK, THIN, line, picture, polygon, room, words
 from setupcheck.report.text import limits_in_words
-from setupcheck.report.wording import finer, in_unit, title_of, unit_of
+from setupcheck.report.wording import finer, in_unit, title_of
 
 NO_STACK = ("torque", "contact-length", "contact-area")
 """Requirements that are offered only where they have a value and a limit."""
-MOST_CAUSES = 6
-"""Causes that get a sentence of their own. Source: our choice, for the height of the drawing."""
 LEFT, RIGHT = 6.0, 174.0
 """Where the scale begins and ends [mm of paper]. Source: our choice."""
 BAR_TOP, BAR = 20.5, 6.5
@@ -36,51 +32,6 @@ LIMIT_LINE = 0.9
 """Width of the line of a limit [mm of paper], which no piece may be taken for. Source: our choice."""
 ROW = 4.2
 """Distance of two lines of text [mm of paper]. Source: our choice."""
-
-
-@record
-class Piece:
-    """One cause in the bar: how far it moves the figure down and up [base unit of the figure]; negative where it takes away.
-
-    number  links piece and sentence;  known  how its size is known, in words: measured, typical, by record, or nothing
-    """
-
-    number: int
-    said: str
-    down: float
-    up: float
-    known: str = ""
-
-    @property
-    def measured(self) -> bool:
-        """Somebody has read it at the machine."""
-        return self.known.strip() == "measured"
-
-    @property
-    def size(self) -> float:
-        return max(self.down, self.up, key=abs)
-
-
-@record
-class Bar:
-    """A requirement ready to draw, all values in its base unit.
-
-    base   value that the causes move;  ways  "up", "down" or both: where they are drawn
-    unit, digits  of its value, for people
-    """
-
-    scope: Scope
-    result: Result
-    base: float
-    pieces: tuple[Piece, ...]
-    ways: tuple[str, ...]
-    unit: str
-    digits: int
-
-    @property
-    def limits(self) -> tuple[float, ...]:
-        s = self.result.stack
-        return tuple(x for x in (s.low, s.high) if x is not None)
 
 
 def offered(found: Review) -> Iterator[Picture]:
@@ -97,37 +48,6 @@ def offered(found: Review) -> Iterator[Picture]:
 def _draw(found: Review, scope: Scope) -> str:
     result = found.results.get(scope.key)
     return _open(found, scope) if result is None else _closed(found, bar_of(found, scope, result))
-
-
-def bar_of(found: Review, scope: Scope, result: Result) -> Bar:
-    """The pieces of a requirement, biggest first, the smallest gathered; their sum with the base is the worst case."""
-    c, stack = result.combined, result.stack
-    unit, digits = unit_of(found.book, scope)
-    both = result.figure.signed and not (stack.high is None and stack.low is not None)
-    ways = ("down", "up") if both else ("up",) if c.end == "high" else ("down",)
-    pushes = [p for p in result.figure.pushes() if any(p.up if way == "up" else p.down for way in ways)]
-    ordered = sorted(pushes, key=lambda p: (-max(abs(p.up), abs(p.down)), p.cause.key))
-    base = c.base if result.figure.signed else 0.0
-    pieces: list[Piece] = []
-    if c.base and not result.figure.signed:
-        pieces.append(Piece(1, _base_in_words(stack.require.what), 0.0, c.base))
-    shown = ordered if len(ordered) <= MOST_CAUSES else ordered[: MOST_CAUSES - 1]
-    for push in shown:
-        said, known = cause_in_words(push.cause.key), how_known(push.cause, found.loaded)
-        pieces.append(Piece(len(pieces) + 1, said, push.down, push.up, known))
-    if rest := ordered[len(shown) :]:
-        down, up = sum(p.down for p in rest), sum(p.up for p in rest)
-        pieces.append(Piece(len(pieces) + 1, f"{len(rest)} more", down, up))
-    return Bar(scope, result, base, tuple(pieces), ways, unit, digits)
-
-
-def _base_in_words(what: str) -> str:
-    """What a figure is made of before any cause moves it."""
-    if what == "mid-plane":
-        return "what the drawn sizes themselves miss by"
-    if "pitch" in what or what.startswith("index") or what == "on-workpiece":
-        return "what is known of the division, as of rounded settings"
-    return "what is known beforehand"
 
 
 # -- the sheet -------------------------------------------------------------------------------------------------------
@@ -148,7 +68,7 @@ class _Scale:
 def _scale(bar: Bar) -> _Scale:
     """From zero to the limit or past it; between two limits, and where the value is far from zero, from a little below."""
     c = bar.result.combined
-    seen = [*bar.limits, bar.base, *_lane_ends(bar)]
+    seen = [*bar.limits, bar.base, *lane_ends(bar)]
     seen += [c.worst.high, c.likely.high] if "up" in bar.ways else []
     seen += [c.worst.low, c.likely.low] if "down" in bar.ways else []
     low, high = min(seen), max(seen)
@@ -158,16 +78,6 @@ def _scale(bar: Bar) -> _Scale:
         high = low + 1.0
     edge = 0.04 * (high - low)
     return _Scale(low if low == 0.0 else low - edge, high + edge)
-
-
-def _lane_ends(bar: Bar) -> list[float]:
-    """The farthest the bar goes on each way, before what takes away."""
-    ends = []
-    if "up" in bar.ways:
-        ends.append(bar.base + sum(max(p.up, 0.0) for p in bar.pieces))
-    if "down" in bar.ways:
-        ends.append(bar.base - sum(max(p.down, 0.0) for p in bar.pieces))
-    return ends
 
 
 def _closed(found: Review, bar: Bar) -> str:
@@ -261,7 +171,7 @@ def _is_free(start: float, end: float, taken: Sequence[tuple[float, float]]) -> 
 def _bars(bar: Bar, scale: _Scale) -> list[str]:
     pieces: list[str] = []
     parts: list[str] = []
-    for piece, a, b, lane in _laid(bar):
+    for piece, a, b, lane in laid(bar):
         x, wide = min(scale.x(a), scale.x(b)), abs(scale.x(b) - scale.x(a))
         y, high = (BAR_TOP, BAR) if not lane else (BAR_TOP + BAR + 1.0, 3.0)
         pieces.append(box(x, y, wide, high, fill=_fill(piece), stroke=0.0))
@@ -283,23 +193,10 @@ def _fill(piece: Piece) -> str:
     return GREYS[(piece.number - 1) % len(GREYS)]
 
 
-def _laid(bar: Bar) -> Iterator[tuple[Piece, float, float, int]]:
-    """(piece, from, to, lane): outwards from the base, biggest first; what takes away goes back in a lane of its own."""
-    for way in bar.ways:
-        sign = 1.0 if way == "up" else -1.0
-        sizes = [(p, p.up if way == "up" else p.down) for p in bar.pieces]
-        at = bar.base
-        for lane, wanted in ((0, True), (1, False)):
-            for piece, size in sizes:
-                if size and (size > 0.0) == wanted:
-                    yield piece, at, at + sign * size, lane
-                    at += sign * size
-
-
 def _numbers(bar: Bar, scale: _Scale, y: float) -> tuple[list[str], float]:
     """Each piece's number: in it where it is wide enough, else under the bar, led to its piece; and where that ends."""
     parts, narrow = [], []
-    for piece, a, b, lane in _laid(bar):
+    for piece, a, b, lane in laid(bar):
         x, wide = (scale.x(a) + scale.x(b)) / 2.0, abs(scale.x(b) - scale.x(a))
         text = str(piece.number)
         if wide > room(text, SIZE) + 1.6 and not lane and _off_limits(bar, scale, x, room(text, SIZE)):
@@ -387,7 +284,7 @@ def _sentences(bar: Bar, y: float, *, inches: bool) -> tuple[list[str], float]:
     swatches: list[str] = []
     parts: list[str] = []
     unit, digits = finer(bar.unit, inches=inches)
-    of, scale = _share_of(bar)
+    of, scale = share_of(bar)
     for piece in bar.pieces:
         size = piece.size
         if len(bar.ways) == 2 and abs(piece.up - piece.down) > 1e-9 * max(abs(piece.up), abs(piece.down)):
@@ -425,16 +322,6 @@ def _sentence(said: str, told: str) -> list[str]:
         return [short(said, wide), short(told, wide)]
     lines = wrapped(whole, wide, 2)
     return lines if lines[-1].endswith(told) else [short(said, wide), told]
-
-
-def _share_of(bar: Bar) -> tuple[str, float]:
-    """What a cause's share is counted in, in words and in the base unit; 0 where there is nothing to count in."""
-    s = bar.result.stack
-    if s.low is not None and s.high is not None:
-        return "half the span", bar.result.scale
-    if s.low is not None:
-        return "the way to the limit", bar.base - s.low
-    return "the limit", s.high or 0.0
 
 
 def _open(found: Review, scope: Scope) -> str:

@@ -12,7 +12,7 @@ from setupcheck.flow import Review
 from setupcheck.jobfile.names import Ref
 from setupcheck.notation import show
 from setupcheck.quantities.scopes import stack_of
-from setupcheck.report.pictures import TALLEST, WIDEST, routes, stacks
+from setupcheck.report.pictures import TALLEST, WIDEST, routes, stack_bars, stacks
 from tests.unit.report.pictures.shown import MISTAKES, SHIPPED, SVG, WHEEL, of_text, reviewed, sheet, shown, written
 from tests.unit.report.test_drawings import every_text_is_free, parsed
 
@@ -55,7 +55,7 @@ def test_the_pieces_add_up_to_the_worst_case_the_review_prints(job: str) -> None
         result = found.results.get(scope.key)
         if result is None:
             continue
-        bar = stacks.bar_of(found, scope, result)
+        bar = stack_bars.bar_of(found, scope, result)
         worst = result.combined.worst
         if "up" in bar.ways:
             assert bar.base + sum(p.up for p in bar.pieces) == pytest.approx(worst.high, abs=1e-9), scope.key
