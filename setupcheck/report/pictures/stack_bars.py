@@ -73,7 +73,8 @@ def bar_of(found: Review, scope: Scope, result: Result) -> Bar:
     pieces: list[Piece] = []
     if c.base and not result.figure.signed:
         pieces.append(Piece(1, _base_in_words(stack.require.what), 0.0, c.base))
-    shown = ordered if len(ordered) <= MOST_CAUSES else ordered[: MOST_CAUSES - 1]
+    most = MOST_CAUSES - 1 if both else MOST_CAUSES  # both ways takes each piece twice
+    shown = ordered if len(ordered) <= most else ordered[: most - 1]
     for push in shown:
         said, known = cause_in_words(push.cause.key), how_known(push.cause, found.loaded)
         pieces.append(Piece(len(pieces) + 1, said, push.down, push.up, known))

@@ -108,10 +108,10 @@ def _judged(bar: Bar) -> list[str]:
     if margin is None:
         return [words((LEFT, 11.2), short(text, RIGHT - LEFT, 3.4), size=3.4)]
     said = f"inside by {show(margin, bar.unit, bar.digits)}" if margin >= 0.0 else _outside(bar, -margin)
-    room_left = RIGHT - LEFT - room(said, 3.4) - 4.0
+    size = 3.4 if room(text, 3.4) + room(said, 3.4) + 4.0 <= RIGHT - LEFT else SIZE
     return [
-        words((LEFT, 11.2), short(text, room_left, 3.4), size=3.4),
-        words((RIGHT, 11.2), said, size=3.4, anchor="end", bold=margin < 0.0),
+        words((LEFT, 11.2), short(text, RIGHT - LEFT - room(said, size) - 3.0, size), size=size),
+        words((RIGHT, 11.2), said, size=size, anchor="end", bold=margin < 0.0),
     ]
 
 

@@ -13,11 +13,22 @@ from setupcheck.jobfile.names import Ref
 from setupcheck.notation import show
 from setupcheck.quantities.scopes import stack_of
 from setupcheck.report.pictures import TALLEST, WIDEST, routes, stack_bars, stacks
-from tests.unit.report.pictures.shown import MISTAKES, SHIPPED, SVG, WHEEL, of_text, reviewed, sheet, shown, written
+from tests.unit.report.pictures.shown import (
+    MISTAKES,
+    ROOT,
+    SHIPPED,
+    SVG,
+    WHEEL,
+    of_text,
+    reviewed,
+    sheet,
+    shown,
+    written,
+)
 from tests.unit.report.test_drawings import every_text_is_free, parsed
 
-DEEPEST = {"datums": TALLEST, "stack": 85.0, "axial": 100.0}
-LARGEST = {"datums": 16_000, "stack": 6_500, "axial": 5_000}
+DEEPEST = {"datums": TALLEST, "stack": 82.0, "axial": 100.0}
+LARGEST = {"datums": 16_000, "stack": 6_000, "axial": 5_000}
 
 
 @pytest.mark.parametrize("job", [*SHIPPED, *MISTAKES])
@@ -227,6 +238,16 @@ def test_a_missing_shim_is_said_with_its_side() -> None:
 def test_a_required_length_shows_its_faces_and_its_limits() -> None:
     told = " ".join(written(shown(reviewed("coupling-hub"))["axial-4"].draw()))
     assert "shoulder to front" in told and "within 69.9400 to 70.0600 mm" in told
+
+
+def test_an_inch_job_shows_inches() -> None:
+    plate = (ROOT / "jobs" / "index-plate.yaml").read_text(encoding="utf-8")
+    asked = "  - {what: length, of: plate.front, about: plate.back, between: [0.4 in, 0.9 in]}\n"
+    found = of_text(plate.replace("require:\n", f"require:\n{asked}"))
+    along, stack = (written(shown(found)[name].draw()) for name in ("axial-1", "stack-1"))
+    assert "0.6250 in, made 0.6230 to 0.6270" in along
+    assert "worst case 0.62300 to 0.62700 within 0.40000 to 0.90000 in" in stack
+    assert not any(" mm" in text or " um" in text for text in (*along, *stack))
 
 
 # -- hostile and odd jobs --------------------------------------------------------------------------------------------
