@@ -15,6 +15,7 @@ from setupcheck.jobfile.changing import Change
 from setupcheck.jobfile.ranging import read_range
 from setupcheck.jobfile.reading import read_job_text
 from setupcheck.report.index_table import as_index_table
+from setupcheck.report.pictures import pictures
 from setupcheck.report.text import as_text
 from setupcheck.report.vary import as_text as varied_as_text
 from setupcheck.report.vary_drawing import as_drawing
@@ -57,7 +58,14 @@ def reports() -> dict[str, str]:
 
 def drawings() -> dict[str, str]:
     """File name -> SVG of every golden drawing."""
-    return {"vary-range.svg": as_drawing(swept())}
+    return {"vary-range.svg": as_drawing(swept()), **route_pictures()}
+
+
+def route_pictures() -> dict[str, str]:
+    """The datums, the first stack and the lengths along the axis of the worm wheel."""
+    drawn = pictures(review(ROOT / "jobs" / "rotator-worm-wheel.yaml"))
+    names = {"datums": "datums", "stack": "stack-1", "axial": "axial"}
+    return {f"picture-{name}.svg": drawn[key].draw() for name, key in names.items()}
 
 
 def varied() -> str:

@@ -32,4 +32,8 @@ def pictures(found: Review, read: ReadBack | None = None) -> dict[str, Picture]:
 
 
 def _all(found: Review, read: ReadBack | None) -> Iterator[Picture]:
-    yield from ()
+    from setupcheck.report.pictures import axial, datums, stacks
+
+    yield from datums.offered(found)
+    yield from axial.offered(found)
+    yield from stacks.offered(found)
