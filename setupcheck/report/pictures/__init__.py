@@ -32,4 +32,7 @@ def pictures(found: Review, read: ReadBack | None = None) -> dict[str, Picture]:
 
 
 def _all(found: Review, read: ReadBack | None) -> Iterator[Picture]:
-    yield from ()
+    from setupcheck.report.pictures import heating, pitch
+
+    yield from heating.offered(found)
+    yield from pitch.offered(found, read)
