@@ -114,7 +114,7 @@ class Eccentric:
 
 @record
 class Mean:
-    """What was read at one station in one direction, zeros and drift taken off: place and deviation in the frame of the work [rad].
+    """What was read at one station in one direction, zeros and drift taken off: place, deviation [rad], frame of the work.
 
     readings  how many, both faces of one sight counted once;  direction  +1 forward, -1 reverse, 0 not said
     """

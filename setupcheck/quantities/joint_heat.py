@@ -138,7 +138,7 @@ def window(
 
 @record
 class Over:
-    """Hub and shaft over each other before they touch: both rings, the shaft as cold as it can be [degC], gap on the radius [mm]."""
+    """Hub and shaft over each other before they touch: rings, the shaft as cold as it can be [degC], gap on the radius [mm]."""
 
     hub: Ring
     shaft: Ring
@@ -146,9 +146,7 @@ class Over:
     gap: float
 
 
-def over(
-    floor: Floor, join: Join, pair: Pair, sizes: JointSizes, shaft_at: float, op: int
-) -> Over | Open | None:
+def over(floor: Floor, join: Join, pair: Pair, sizes: JointSizes, shaft_at: float, op: int) -> Over | Open | None:
     """Hub and shaft as the hub goes over it; None where the seat is no plain round surface. Source: as `window`."""
     seat = seat_of(floor, join, DULL)
     if seat is None or isinstance(seat, Open):

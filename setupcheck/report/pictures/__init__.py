@@ -32,7 +32,8 @@ def pictures(found: Review, read: ReadBack | None = None) -> dict[str, Picture]:
 
 
 def _all(found: Review, read: ReadBack | None) -> Iterator[Picture]:
-    from setupcheck.report.pictures import heating, pitch
+    from setupcheck.report.pictures import heating, high_spots, pitch
 
+    yield from high_spots.offered(found)
     yield from heating.offered(found)
     yield from pitch.offered(found, read)

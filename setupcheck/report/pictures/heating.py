@@ -23,9 +23,23 @@ from setupcheck.record import record
 from setupcheck.report.joint import fitted, has_play
 from setupcheck.report.pictures import Picture
 from setupcheck.report.pictures.axes import (
-    DASHES, DOT_DASH, DOTS, EDGE, HEAD, LINE, SHEET, SIZE, Scale, across, apart, area, shortened, told, upright,
-)  # fmt: skip
-from setupcheck.report.svg import THICK, THIN, Point, line, picture, polyline, words
+    DASHES,
+    DOT_DASH,
+    DOTS,
+    EDGE,
+    HEAD,
+    LINE,
+    SHEET,
+    SIZE,
+    Scale,
+    across,
+    apart,
+    area,
+    shortened,
+    told,
+    upright,
+)
+from setupcheck.report.svg import THICK, Point, line, picture, polyline, words
 
 if TYPE_CHECKING:
     from setupcheck.flow import Review
@@ -38,8 +52,8 @@ SAID_AT = 120.0
 """Where the words of the levels begin [mm]. Our choice."""
 THICKEST = 0.5
 """Line width of the coldest hub, the one that counts [mm]. Our choice."""
-POINTS = 16
-"""Points of one curve in one field. Our choice: a curve that cools is smooth."""
+POINTS, FEW = 16, 6
+"""Points of one curve in the far field and in the near one. Our choice: a curve that cools is smooth."""
 UNKNOWN_CARRY, UNKNOWN_SPAN = 60.0, 600.0
 """Seconds drawn where the job states no carry, and where nothing ends within sight. Our choice."""
 LEVELS = (
@@ -188,8 +202,10 @@ def _shaft(found: Review, join: Join, op: int) -> Body | Open | None:
         seat = seat_of(found.floor, join, DULL)
     except OutOfRange:
         seat = None
-    if isinstance(start, Open) or isinstance(seat, Open):
-        return start if isinstance(start, Open) else seat
+    if isinstance(start, Open):
+        return start
+    if isinstance(seat, Open):
+        return seat
     return Body(start[0], seat)
 
 
@@ -207,8 +223,8 @@ def over_each_other(found: Review, scope: Scope, join: Join, made: Course) -> li
     if between is None or isinstance(between, Open):
         return []
     rows = []
-    for i in range(POINTS // 2 + 1):
-        seconds = made.window * i / (POINTS // 2)
+    for i in range(FEW + 1):
+        seconds = made.window * i / FEW
         lost, gained = over_the_shaft(
             between.hub, between.shaft, apart=at_shaft - between.coldest, gap=between.gap, seconds=seconds
         )
@@ -251,8 +267,8 @@ def _says(made: Course) -> str:
     if made.hub is None or made.hub.ring is None:
         return "What the chilled shaft gains on its way in still air. Worked out, not measured: trust gauge and probe."
     return (
-        "Still air, from the moment the hub leaves the heat; on the right the same, should it be kept waiting. Draught, tongs and a "
-        "cold bench take more."
+        "Still air, from the moment the hub leaves the heat; on the right the same, should it be kept waiting. Draught, "
+        "tongs and a cold bench take more."
     )
 
 
@@ -282,7 +298,7 @@ def _temperatures(made: Course, closing: list[tuple[float, float, float]]) -> tu
 
 def _curves(made: Course, scale: Scale, up: Scale) -> list[str]:
     def curve(body: Body) -> list[Point]:
-        count = POINTS if body.ring is not None else 1
+        count = (POINTS if scale.start == FAR[0] else FEW) if body.ring is not None else 1
         times = [scale.high * i / count for i in range(count + 1)]
         return [(round(scale.put(t), 2), round(up.put(body.at(t, made.air)), 2)) for t in times]
 
@@ -302,7 +318,9 @@ def _closing(rows: list[tuple[float, float, float]], scale: Scale, up: Scale) ->
     if not rows:
         return []
     return [
-        polyline([(round(scale.put(t), 2), round(up.put(both[k]), 2)) for t, *both in rows], width=THICKEST, dashes=DASHES)
+        polyline(
+            [(round(scale.put(t), 2), round(up.put(both[k]), 2)) for t, *both in rows], width=THICKEST, dashes=DASHES
+        )
         for k in (0, 1)
     ]
 
@@ -375,9 +393,11 @@ def _key(
     if made.hottest is not None:
         kinds.append((THICK, "", "hottest hub: most heat, bright"))
     if closing:
-        kinds.append((THICKEST, DASHES, f"over each other, not touching{', coldest shaft' if made.chilled else ''}"))
+        kinds.append(
+            (THICKEST, DASHES, "over it, shaft at its coldest" if made.chilled else "over each other, not touching")
+        )
     if made.shaft is not None:
-        kinds.append((THICKEST, DOT_DASH, "shaft, chilled" if made.chilled else "shaft"))
+        kinds.append((THICKEST, DOT_DASH, "shaft, chilled, at its warmest" if made.chilled else "shaft"))
     y = BOTTOM + 14.5
     for i, (width, dashes, text) in enumerate(kinds):
         at = y + i * LINE
@@ -394,4 +414,3 @@ def _cautions(found: Review, made: Course) -> list[str]:
     """The review's own cautions of the hot part and of the cold one."""
     mine = {c.id: c.text for c in found.evaluation.cautions if c.op == made.op}
     return [f"Caution: {mine[name]}" for name in CAUTIONS if name in mine]
-

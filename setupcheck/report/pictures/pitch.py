@@ -20,9 +20,22 @@ from setupcheck.quantities.scopes import stack_of
 from setupcheck.record import record
 from setupcheck.report.pictures import Picture
 from setupcheck.report.pictures.axes import (
-    DASHES, EDGE, HEAD, LINE, MOST_POINTS, SHEET, SIZE, Scale, across, area, path, shortened, told, upright,
-)  # fmt: skip
-from setupcheck.report.svg import THICK, THIN, Point, line, number, picture, polyline, words
+    DASHES,
+    EDGE,
+    HEAD,
+    LINE,
+    MOST_POINTS,
+    SHEET,
+    SIZE,
+    Scale,
+    across,
+    area,
+    path,
+    shortened,
+    told,
+    upright,
+)
+from setupcheck.report.svg import THICK, Point, line, number, picture, polyline, words
 from setupcheck.report.wording import clean
 
 if TYPE_CHECKING:
@@ -219,10 +232,14 @@ def measured(read: ReadBack | None, name: str) -> list[Shown]:
         middle = (max(values) + min(values)) / 2.0
         for m in mine:
             pitches = of.turn * (m.theta - of.start) * of.count / math.tau
-            place = (pitches + (0.0 if of.holes else 0.5) + 1e-9) % of.count - 1e-9 + 0.5  # a ring's edge lies before its first
+            place = (
+                (pitches + (0.0 if of.holes else 0.5) + 1e-9) % of.count - 1e-9 + 0.5
+            )  # a ring's edge lies before its first
             doubt = 2.0 * read.reduced.scatter / math.sqrt(m.readings)
             found.append(
-                Shown(place, of.radius * (m.value - middle), of.radius * doubt if math.isfinite(doubt) else 0.0, direction)
+                Shown(
+                    place, of.radius * (m.value - middle), of.radius * doubt if math.isfinite(doubt) else 0.0, direction
+                )
             )
     return sorted(found, key=lambda p: (-p.direction, p.place))
 
@@ -404,7 +421,9 @@ def _sample(kind: str, x: float, y: float) -> list[str]:
         case "limit":
             return [line(*ends, width=LIMIT_WIDTH)]
         case "dot" | "cross":
-            return [path(_mark(middle, y, cross=kind == "cross"), width=0.3 if kind == "cross" else 1.2, round_ends=True)]
+            return [
+                path(_mark(middle, y, cross=kind == "cross"), width=0.3 if kind == "cross" else 1.2, round_ends=True)
+            ]
         case "bar":
             return [path(f"M{number(middle)} {number(y - 1.3)}V{number(y + 1.3)}")]
         case _:
