@@ -12,12 +12,10 @@ from typing import TYPE_CHECKING
 
 from setupcheck.jobfile.setups import Join
 from setupcheck.notation import show
-from setupcheck.physics.carrying import over_the_shaft
-from setupcheck.physics.heating import BRIGHT, DULL, Ring, cooled_temperature
-from setupcheck.quantities.book import Answer, Known, Open, OutOfRange, Scope
-from setupcheck.quantities.chilling import out_of_the_cold, seat_of
+from setupcheck.quantities.book import Answer, Known, Open, Scope
 from setupcheck.quantities.joining import JointSizes
-from setupcheck.quantities.joint_heat import over, ring_of, unheated
+from setupcheck.quantities.joint_heat import unheated
+from setupcheck.quantities.on_the_way import Body, hub_body, over_each_other, shaft_body
 from setupcheck.quantities.pairing import Pair
 from setupcheck.record import record
 from setupcheck.report.joint import fitted, has_play
@@ -68,20 +66,6 @@ CAUTIONS = ("hot-part", "cold-part-and-frost")
 """Cautions that stand under the picture, in the review's words."""
 FROM = {"hot-plate": "hot plate", "oil-bath": "oil bath", "induction": "heater", "flame": "flame"}
 """What stands for the oven where it is none."""
-
-
-@record(eq=False)
-class Body:
-    """One part on its way: where it starts [degC], its ring; None for one that keeps its temperature."""
-
-    start: float
-    ring: Ring | None
-
-    def at(self, seconds: float, air: float) -> float:
-        """Temperature [degC] by the very function that the heating plan is worked out with."""
-        if self.ring is None or seconds == 0.0:
-            return self.start
-        return cooled_temperature(self.ring, start=self.start, seconds=seconds, air=air)
 
 
 @record(eq=False)
@@ -145,7 +129,7 @@ def course(found: Review, scope: Scope, join: Join) -> Course:
     levels = tuple((name, t) for name, _ in LEVELS if (t := value(name)) is not None)
     at = dict(levels)
     hub, hottest = _hubs(found, scope, join, at)
-    shaft = _shaft(found, join, op)
+    shaft = shaft_body(found.floor, join, op)
     if isinstance(shaft, Open):
         missing.update(dict.fromkeys(shaft.missing))
     return Course(
@@ -180,64 +164,45 @@ def _hubs(found: Review, scope: Scope, join: Join, at: dict[str, float]) -> tupl
     pair, even = _value(found.book.get("fit.pair", scope)), _value(found.book.get("heat.biot", scope))
     if not isinstance(pair, Pair) or even is None:
         return None, None
-    try:
-        dull, bright = ring_of(pair, DULL), ring_of(pair, BRIGHT)
-    except OutOfRange:
-        return None, None
     low, high = at.get("heat.planned_low"), at.get("heat.planned_high")
-    return (Body(low, dull) if low is not None else None), (Body(high, bright) if high is not None else None)
+    coldest = hub_body(pair, low, dull=True) if low is not None else None
+    return coldest, hub_body(pair, high, dull=False) if high is not None else None
 
 
 def _value(answer: Answer) -> object:
     return answer.value if isinstance(answer, Known) else None
 
 
-def _shaft(found: Review, join: Join, op: int) -> Body | Open | None:
-    """The shaft as warm as it can be: out of the cold, or as warm as stated, or as the room."""
-    heat, room = join.heat, found.loaded.job.room
-    if heat is None or not heat.chills(room):
-        return Body(heat.shaft if heat is not None and heat.shaft is not None else room, None)
-    start = out_of_the_cold(join, op)
-    try:
-        seat = seat_of(found.floor, join, DULL)
-    except OutOfRange:
-        seat = None
-    if isinstance(start, Open):
-        return start
-    if isinstance(seat, Open):
-        return seat
-    return Body(start[0], seat)
-
-
-def over_each_other(found: Review, scope: Scope, join: Join, made: Course) -> list[tuple[float, float, float]]:
+def closing(found: Review, scope: Scope, join: Join, made: Course) -> list[tuple[float, float, float]]:
     """Seconds from leaving the oven, hub, shaft [degC] from arrival until it may bite, nothing touching; may be empty."""
     pair, sizes = (_value(found.book.get(name, scope)) for name in ("fit.pair", "fit.sizes"))
     at_shaft, shaft_at = (_value(found.book.get(f"heat.{name}", scope)) for name in ("at_shaft", "shaft_at"))
     if not (isinstance(pair, Pair) and isinstance(sizes, JointSizes)):
         return []
-    if not (isinstance(at_shaft, float) and isinstance(shaft_at, float | int)):
+    if not (isinstance(at_shaft, int | float) and isinstance(shaft_at, int | float)):
         return []
     if made.carry is None or made.window is None or not math.isfinite(made.window):
         return []
-    between = over(found.floor, join, pair, sizes, float(shaft_at), made.op)
-    if between is None or isinstance(between, Open):
-        return []
-    rows = []
-    for i in range(FEW + 1):
-        seconds = made.window * i / FEW
-        lost, gained = over_the_shaft(
-            between.hub, between.shaft, apart=at_shaft - between.coldest, gap=between.gap, seconds=seconds
-        )
-        rows.append((made.carry + seconds, at_shaft - lost, between.coldest + gained))
-    return rows
+    rows = over_each_other(
+        found.floor,
+        join,
+        pair,
+        sizes,
+        at_shaft=float(at_shaft),
+        shaft_at=float(shaft_at),
+        window=made.window,
+        op=made.op,
+        steps=FEW,
+    )
+    return [(made.carry + seconds, *both) for seconds, *both in rows]  # type: ignore[misc]
 
 
 def drawn(found: Review, scope: Scope, join: Join) -> str:
     """The SVG."""
     made = course(found, scope, join)
-    closing = over_each_other(found, scope, join, made)
+    touching = closing(found, scope, join, made)
     near, far = _spans(made)
-    low, high = _temperatures(made, closing)
+    low, high = _temperatures(made, touching)
     up = Scale(low, high, BOTTOM, TOP)
     fields = [(Scale(0.0, near, *NEAR), near), (Scale(0.0, far, *FAR), far)]
     parts = [words((EDGE, 6.5), shortened(made.title, SHEET - 2.0 * EDGE, HEAD), size=HEAD, bold=True)]
@@ -248,11 +213,11 @@ def drawn(found: Review, scope: Scope, join: Join) -> str:
     for scale, _ in fields:
         parts += _curves(made, scale, up)
         parts += across(scale, BOTTOM, 4, TOP)
-    parts += _closing(closing, fields[0][0], up)
+    parts += _closing(touching, fields[0][0], up)
     parts += _levels(made, up)
     moments = _moments(found, scope, made)
     parts += _moment_lines(moments, fields)
-    y = _key(parts, made, moments, closing)
+    y = _key(parts, made, moments, touching)
     for text in _cautions(found, made):
         rows = told((EDGE, y), text, SHEET - 2.0 * EDGE, most=4)
         parts += rows
