@@ -42,7 +42,7 @@ from setupcheck.report.svg import THICK, Point, line, picture, polyline, words
 if TYPE_CHECKING:
     from setupcheck.flow import Review
 
-TOP, BOTTOM = 23.0, 61.0
+TOP, BOTTOM = 22.0, 58.0
 """Upper and lower edge of both fields [mm]. Our choice."""
 NEAR, FAR = (17.0, 58.0), (68.0, 116.0)
 """The field of the carry and the field of what lies beyond, from left to right [mm]. Our choice."""
@@ -323,6 +323,9 @@ def _moments(found: Review, scope: Scope, made: Course) -> list[tuple[int, float
     if made.carry is not None:
         hot = says("heat.at_shaft")
         has = f", the hub still has {hot}" if hot and made.hub is not None and made.hub.ring is not None else ""
+        at_shaft, needed = (_value(found.book.get(f"heat.{name}", scope)) for name in ("at_shaft", "needed"))
+        if isinstance(at_shaft, float) and isinstance(needed, float) and at_shaft < needed:
+            has = f", the hub has {hot}: TOO COLD"
         rows.append((0, made.carry, f"{show(made.carry, 's', 0)}: at the shaft{has}"))
     if made.carry is not None and made.window is not None and math.isfinite(made.window):
         rows.append((0, made.carry + made.window, f"{says('heat.window')} later: over the shaft it may bite"))

@@ -26,9 +26,9 @@ CENTRE, RADIUS = (50.0, 59.0), 29.0
 """Middle and radius of the rim [mm]. Our choice."""
 SAID_AT = 95.0
 """Where the words of the arrows begin [mm]. Our choice."""
-KEY_FROM, UNDER = 25.0, 99.5
+KEY_FROM, UNDER = 25.0, 98.8
 """Base lines of the first arrow's words, and of the words under the rim [mm]. Our choice."""
-LENS_RADIUS, SMALL, LOWEST = 24.0, 0.4, 108.0
+LENS_RADIUS, SMALL, LOWEST = 24.0, 0.4, 107.5
 """Arrows that reach no farther than that share of the rim are drawn larger as well: the circle for it, and where it ends below
 [mm]. Our choice."""
 NUMBERS = 12

@@ -130,7 +130,7 @@ def spots(found: Review, scope: Scope) -> Spots:
         what = "lean"
         if not angle:
             account, counts, what = account * counts, 1.0, "face run-out"
-    arrows = _arrows(account * sense)
+    arrows = arrows_of(account * sense)
     known, rest, limit = abs(account.known()), _rest(account), _limit(result, counts)
     if not result.figure.signed:
         rest = max(result.combined.worst.high / counts - known, 0.0)
@@ -165,7 +165,7 @@ def _sense(asked: str, state: State | None) -> tuple[float, str]:
     return 1.0, "it is high at"
 
 
-def _arrows(account: Account) -> tuple[Arrow, ...]:
+def arrows_of(account: Account) -> tuple[Arrow, ...]:
     """Known causes, the largest first; many small ones in one."""
     found = [
         Arrow(a * c.mean + b * c.mean.conjugate(), clean(cause_in_words(c.key))) for c, (a, b) in account.terms.items()

@@ -54,12 +54,14 @@ ASKED = (
     "chord",
 )
 """Requirements that speak of a ring's division, the nearest to what is drawn first."""
-LEFT, RIGHT, TOP, BOTTOM = 18.0, 160.0, 27.0, 82.0
+LEFT, RIGHT, TOP, BOTTOM = 18.0, 160.0, 26.0, 72.0
 """Edges of the field [mm]. Our choice."""
 MOST_DRAWN = 2_000_000
 """Places times draws that are looked at; of a larger ring fewer draws. Our choice, for the time it takes."""
 SHARE = 0.95
 """Of the draws, place by place, within the dashed lines. Our choice, as the review's likely value."""
+MOST_MEASURED, MARK = 160, 1.4
+"""Measured points drawn, of more the highest and lowest of each stretch; the size of their mark [mm]. Our choice."""
 LIMIT_WIDTH, DRAW = 0.7, 0.18
 """Line widths of the limit and of the one draw [mm]. Our choice."""
 
@@ -253,7 +255,7 @@ def drawn(found: Review, scope: Scope, name: str, read: ReadBack | None) -> str:
     over = Scale(0.5, plan.count + 0.5, LEFT, RIGHT)
 
     def put(place: float, arc: float) -> Point:
-        return round(over.put(place), 2), round(up.put(min(max(arc * FACTOR[unit], -reach), reach)), 2)
+        return round(over.put(place), 1), round(up.put(min(max(arc * FACTOR[unit], -reach), reach)), 2)
 
     def size(value: float) -> str:
         return show(value, unit, digits)
@@ -322,7 +324,7 @@ def _band(plan: Planned, put: Callable[[float, float], Point]) -> list[str]:
         parts += [line(put(first, way * half), put(last, way * half), width=LIMIT_WIDTH) for way in (1.0, -1.0)]
     for values, ends in ((plan.low, (min,)), (plan.high, (max,))):
         if values:
-            rows = thinned([(i + 1.0, v) for i, v in enumerate(values)], ends, MOST_POINTS // 2)
+            rows = thinned([(i + 1.0, v) for i, v in enumerate(values)], ends, MOST_POINTS // 3)
             parts.append(polyline([put(*row) for row in rows], width=THICK, dashes=DASHES))
     if plan.one:
         rows = thinned([(i + 1.0, v) for i, v in enumerate(plan.one)], (min, max), MOST_POINTS)
@@ -344,18 +346,18 @@ def thinned(
 
 
 def _measured(points: list[Shown], put: Callable[[float, float], Point]) -> list[str]:
-    """Dots with their uncertainty; crosses for the other direction."""
+    """Dots with their uncertainty, where it reaches out of them; upright crosses for the other direction."""
     parts = []
-    for number_, direction in enumerate(sorted({p.direction for p in points}, reverse=True)):
+    ways = sorted({p.direction for p in points}, reverse=True)
+    for number_, direction in enumerate(ways):
         mine = {(p.place, p.value): p.uncertain for p in points if p.direction == direction}
-        rows = thinned(list(mine), (min, max), MOST_POINTS)
+        rows = thinned(list(mine), (min, max), MOST_MEASURED // len(ways))
         bars, marks = [], []
         for place, value in rows:
             (x, low), (_, high) = put(place, value - mine[place, value]), put(place, value + mine[place, value])
-            y = put(place, value)[1]
-            if low - high > 0.05:
-                bars.append(f"M{number(x)} {number(low)}V{number(high)}")
-            marks.append(_mark(x, y, cross=number_ > 0))
+            if low - high > MARK:
+                bars.append(f"M{number(x)} {number(round(low, 1))}V{number(round(high, 1))}")
+            marks.append(_mark(x, round(put(place, value)[1], 1), cross=number_ > 0))
         if bars:
             parts.append(path("".join(bars)))
         parts.append(path("".join(marks), width=0.3 if number_ else 1.2, round_ends=True))
@@ -364,7 +366,7 @@ def _measured(points: list[Shown], put: Callable[[float, float], Point]) -> list
 
 def _mark(x: float, y: float, *, cross: bool) -> str:
     if cross:
-        return f"M{number(x - 0.6)} {number(y - 0.6)}l1.2 1.2m0 -1.2l-1.2 1.2"
+        return f"M{number(x - 0.7)} {number(y)}h1.4m-.7-.7v1.4"
     return f"M{number(x)} {number(y)}h0"
 
 
@@ -378,6 +380,8 @@ def _key(parts: list[str], plan: Planned, points: list[Shown], size: Callable[[f
     right: list[tuple[str, str]] = []
     if plan.limit is not None:
         right.append(("limit", f"limit {size(plan.limit)} in all"))
+    elif plan.worst is not None:
+        right.append(("", "no limit of it is asked for"))
     for i, direction in enumerate(sorted({p.direction for p in points}, reverse=True)):
         values = [p.value for p in points if p.direction == direction]
         way = {1: " forward", -1: " reverse"}.get(direction, "")
@@ -402,8 +406,6 @@ def _beneath(plan: Planned, points: list[Shown], size: Callable[[float], str]) -
     rows = []
     if plan.gaps > 0.0:
         rows.append(f"Of the worst case {size(plan.gaps)} come within a pitch, where no place is read.")
-    if plan.worst is not None and plan.limit is None:
-        rows.append("No pitch limit is asked for.")
     if points:
         rows.append("Measured points carry the readings' scatter alone; what the instrument is off comes on top.")
     return rows
@@ -426,5 +428,7 @@ def _sample(kind: str, x: float, y: float) -> list[str]:
             ]
         case "bar":
             return [path(f"M{number(middle)} {number(y - 1.3)}V{number(y + 1.3)}")]
+        case "":
+            return []
         case _:
             return [polyline(ends, width=DRAW)]
