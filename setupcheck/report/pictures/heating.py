@@ -38,6 +38,7 @@ from setupcheck.report.pictures.axes import (
     upright,
 )
 from setupcheck.report.svg import THICK, Point, line, picture, polyline, words
+from setupcheck.report.wording import clean
 
 if TYPE_CHECKING:
     from setupcheck.flow import Review
@@ -222,7 +223,7 @@ def drawn(found: Review, scope: Scope, join: Join) -> str:
         rows = told((EDGE, y), text, SHEET - 2.0 * EDGE, most=4)
         parts += rows
         y += LINE * len(rows)
-    return picture(SHEET, y - LINE + 2.5, title=f"{shortened(made.title, 400.0)}. {_says(made)}", parts=parts) + "\n"
+    return picture(SHEET, y - LINE + 2.5, title=clean(f"{made.title}. {_says(made)}"), parts=parts) + "\n"
 
 
 def _says(made: Course) -> str:

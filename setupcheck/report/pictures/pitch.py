@@ -266,7 +266,8 @@ def drawn(found: Review, scope: Scope, name: str, read: ReadBack | None) -> str:
     parts += _band(plan, put)
     parts += _measured(points, put)
     last = _key(parts, plan, points, size)
-    says = f"{plan.title}. {_says(plan, points)}"
+    worst = f"worst case {size(plan.worst)}" if plan.worst is not None else "worst case open"
+    says = f"{plan.title}: planned{' and measured' if points else ''}, {worst}"
     return picture(SHEET, last + 2.5, title=clean(says), parts=parts) + "\n"
 
 
@@ -387,8 +388,10 @@ def _key(parts: list[str], plan: Planned, points: list[Shown], size: Callable[[f
         way = {1: " forward", -1: " reverse"}.get(direction, "")
         right.append(("cross" if i else "dot", f"measured{way}, {size(max(values) - min(values))} in all"))
     if any(p.uncertain > 0.0 for p in points):
-        doubt = size(max(p.uncertain for p in points))
-        right.append(("bar", f"\u00b1{doubt} from scatter, k = 2"))
+        doubt = max(p.uncertain for p in points)
+        seen = 2.0 * doubt / (2.0 * _reach(plan, points)) * (BOTTOM - TOP) > MARK
+        more = "" if seen else ", in the marks"
+        right.append(("bar" if seen else "", f"\u00b1{size(doubt)} from scatter, k = 2{more}"))
     y = BOTTOM + 14.5
     for x, rows in ((EDGE, left), (94.0, right)):
         for i, (kind, text) in enumerate(rows):

@@ -12,18 +12,14 @@ from setupcheck.jobfile.changing import Change, changed
 from setupcheck.report.pictures import Picture, pictures
 from setupcheck.report.svg import room
 
+from ....golden.pages import HIGH_AT as HIGH_AT
+
 JOBS = Path(__file__).resolve().parents[4] / "jobs"
 SHIPPED = sorted(JOBS.glob("*.yaml"))
 WHEEL = JOBS / "rotator-worm-wheel.yaml"
 SVG = "{http://www.w3.org/2000/svg}"
 WIDEST, TALLEST, HEAVIEST = 180.0, 110.0, 10_240
 Box = tuple[float, float, float, float]
-HIGH_AT = (
-    ("setups.50.hold.centre.runout", "{at_most: 10 um, measured: 8 um, uncertainty: 1 um, high_at: 30 deg}"),
-    ("setups.40.hold.centre.runout", "{at_most: 10 um, measured: 7 um, uncertainty: 1 um, high_at: 100 deg}"),
-    ("setups.40.hold.square.face_runout", "{measured: 6 um, uncertainty: 1 um, high_at: 200 deg}"),
-)
-"""Directions that a dial would have shown on the worm wheel. Invented."""
 
 
 def judged(job: Path, *changes: tuple[str, str]) -> Review:
