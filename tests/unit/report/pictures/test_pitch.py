@@ -180,3 +180,11 @@ def test_a_ring_asked_for_its_steps_alone_has_no_limit() -> None:
 def test_two_draws_give_the_same_bytes() -> None:
     first, second = (named(judged(WHEEL), "pitch")["pitch-1"].draw() for _ in range(2))
     assert first == second
+
+
+def test_what_a_file_is_called_or_lacks_cannot_break_the_picture(tmp_path: Path) -> None:
+    text = WHEEL.read_text(encoding="utf-8").replace("Feed rotator worm wheel", "<b>&\\u202e</b>")
+    found = review(read_job_text(text, "<i>.yaml"))
+    for one in (*named(found, "pitch").values(), *named(found, "heating").values()):
+        assert "<b>" not in one.draw()
+        is_a_clear_picture(one.draw())
