@@ -391,7 +391,7 @@ def _key(parts: list[str], plan: Planned, points: list[Shown], size: Callable[[f
         doubt = max(p.uncertain for p in points)
         seen = 2.0 * doubt / (2.0 * _reach(plan, points)) * (BOTTOM - TOP) > MARK
         more = "" if seen else ", in the marks"
-        right.append(("bar" if seen else "", f"\u00b1{size(doubt)} from scatter, k = 2{more}"))
+        right.append(("bar" if seen else "", f"\u00b1{size(doubt)} scatter, k = 2{more}"))
     y = BOTTOM + 14.5
     for x, rows in ((EDGE, left), (94.0, right)):
         for i, (kind, text) in enumerate(rows):

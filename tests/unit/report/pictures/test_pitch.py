@@ -72,6 +72,17 @@ def test_a_figure_of_the_angle_is_brought_back_to_the_circle(what: str) -> None:
     assert made.worst is not None and result.combined.worst.high == pytest.approx(made.worst * factor)
 
 
+def test_what_gaps_add_within_a_pitch_is_in_the_band_and_said() -> None:
+    asked = '[{what: index-within, of: wheel.teeth, at_most: 75"}]'
+    found = judged(JOBS / "wheel-on-spindle.yaml", ("require", asked))
+    made = plan(found, "index-within", "wheel.teeth")
+    (result,) = found.results.values()
+    assert made.worst is not None
+    assert result.combined.worst.high == pytest.approx(made.worst / 2.0 / made.radius)
+    assert 0.0 < made.gaps < made.worst
+    assert "come within a pitch" in said(is_a_clear_picture(named(found, "pitch")["pitch-1"].draw()))
+
+
 @pytest.mark.parametrize("job", [j for j in SHIPPED if j.stem in DIVIDED], ids=lambda p: p.stem)
 def test_every_draw_lies_within_the_band(job: Path) -> None:
     found = judged(job)
@@ -141,7 +152,7 @@ def test_points_are_drawn_where_the_reading_has_them(tmp_path: Path) -> None:
     svg = is_a_clear_picture(text)
     told = said(svg)
     assert "PLANNED and MEASURED" in told and "measured forward" in told and "measured reverse" in told
-    assert re.search(r"±\d+\.\d um from scatter, k = 2", told)
+    assert re.search(r"±\d+\.\d um scatter, k = 2", told)
     dots = next(n.attrib["d"] for n in svg.iter("{http://www.w3.org/2000/svg}path") if "h0" in n.attrib["d"])
     assert 72 == dots.count("M")
 
