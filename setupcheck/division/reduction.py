@@ -19,7 +19,7 @@ from setupcheck.division.points import Points, Prepared, gap_of, prepare, withou
 from setupcheck.division.readings import Readings
 from setupcheck.division.repeatability import repeatability, sighting
 from setupcheck.division.results import Flag, Flanks, Interval, Reduced, Unseen, Wave
-from setupcheck.division.stations import closure, per_mean, places_read, range_of
+from setupcheck.division.stations import closure, means_of, per_mean, places_read, range_of
 from setupcheck.errors import SetupcheckError
 from setupcheck.record import record
 
@@ -140,6 +140,7 @@ def reduce(
         steps=steps,
         repaired=bool(ready.whole),
         against=ready.against,
+        means=means_of(found.points, found.fit, turned=turned),
     )  # fmt: skip
 
 

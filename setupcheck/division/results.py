@@ -113,6 +113,19 @@ class Eccentric:
 
 
 @record
+class Mean:
+    """What was read at one station in one direction, zeros and drift taken off: place, deviation [rad], frame of the work.
+
+    readings  how many, both faces of one sight counted once;  direction  +1 forward, -1 reverse, 0 not said
+    """
+
+    theta: float
+    value: float
+    readings: int
+    direction: int
+
+
+@record
 class Flag:
     """A reading that stands far off the others: line, station [rad], by how much [rad]."""
 
@@ -141,6 +154,7 @@ class Reduced:
     sighting    standard deviation of a direction sighted once in both faces [rad], degrees of freedom; None with one face
     without     the waves fitted without the flagged readings
     repaired    the numbers hold as if what `whole` and `steps` name were put right
+    means       of all stations, direction by direction
     """
 
     verdict: str
@@ -176,3 +190,4 @@ class Reduced:
     steps: tuple[Step, ...]
     repaired: bool
     against: bool
+    means: tuple[Mean, ...] = ()

@@ -3,12 +3,15 @@
 from __future__ import annotations
 
 import math
+from collections.abc import Iterator
 
 import numpy as np
+from numpy.typing import NDArray
 
 from setupcheck.division.design import columns, places
 from setupcheck.division.fit import Fit
 from setupcheck.division.points import Points
+from setupcheck.division.results import Mean
 
 
 def places_read(points: Points, count: int) -> int:
@@ -29,18 +32,46 @@ def range_of(points: Points, fit: Fit, *, centred: bool = False) -> float:
 
     centred  the first wave taken off as well, of both flanks where both were read
     """
-    p, worst = points, 0.0
-    rest = np.array(p.y)
-    for term in fit.terms:
-        first = term.kind in ("wave", "swing") and term.harmonic == 1.0
-        if term.kind in ("zero", "drift", "bend") or (centred and first):
-            rest -= np.asarray(fit.vector(term)) @ np.asarray(columns(term, p, slice(None)))
-    for direction in np.unique(p.direction):
-        mine = p.direction == direction
-        _, at = np.unique(places(p, whole=True)[mine], return_inverse=True)
+    rest, worst = _rest(points, fit, centred=centred), 0.0
+    for mine, at in _each_way(points):
         means = np.bincount(at, rest[mine]) / np.bincount(at)
         worst = max(worst, float(means.max() - means.min()))
     return worst
+
+
+def means_of(points: Points, fit: Fit, *, turned: bool) -> tuple[Mean, ...]:
+    """Mean of every station in each direction, zeros and drift off, in the frame of the work: what `range_of` is the range of.
+
+    turned  stations are turns of the work: delta(theta) = -d(-theta), as with the waves
+    """
+    rest, found = _rest(points, fit, centred=False), []
+    sense = -1.0 if turned else 1.0
+    for mine, at in _each_way(points):
+        times = np.bincount(at)
+        value = sense * np.bincount(at, rest[mine]) / times
+        theta = np.empty(len(times))
+        theta[at] = sense * points.theta[mine]
+        direction = int(points.direction[mine][0])
+        found += [Mean(*row, direction) for row in zip(theta.tolist(), value.tolist(), times.tolist(), strict=True)]
+    return tuple(found)
+
+
+def _rest(points: Points, fit: Fit, *, centred: bool) -> NDArray[np.floating]:
+    """The readings with zeros, drift and, where `centred`, the first wave taken off."""
+    rest = np.array(points.y)
+    for term in fit.terms:
+        first = term.kind in ("wave", "swing") and term.harmonic == 1.0
+        if term.kind in ("zero", "drift", "bend") or (centred and first):
+            rest -= np.asarray(fit.vector(term)) @ np.asarray(columns(term, points, slice(None)))
+    return rest
+
+
+def _each_way(points: Points) -> Iterator[tuple[NDArray[np.bool_], NDArray[np.intp]]]:
+    """For each direction its readings, and of each of them the number of its station."""
+    for direction in np.unique(points.direction):
+        mine = points.direction == direction
+        _, at = np.unique(places(points, whole=True)[mine], return_inverse=True)
+        yield mine, at
 
 
 def closure(points: Points, *, whole: bool) -> float | None:

@@ -110,10 +110,35 @@ def time_to_close(
     if closes <= 0.0:
         return 0.0
     diameter = hub.bore
-    share = 1.0 / hub.heat_capacity + 1.0 / shaft.heat_capacity
+    conductance, share = _exchange(hub, shaft, gap)
     per_joule = diameter * (expansions[0] / hub.heat_capacity + expansions[1] / shaft.heat_capacity)
     cools = closes / per_joule * share
     if cools >= apart:
         return math.inf
-    conductance = AIR_CONDUCTIVITY * math.pi * diameter * hub.length / gap * 1e-3
     return math.log(apart / (apart - cools)) / (conductance * share)
+
+
+def over_the_shaft(hub: Ring, shaft: Ring, *, apart: float, gap: float, seconds: float) -> tuple[float, float]:
+    """What the hub has lost and the shaft has gained after some time over each other, nothing touching [K].
+
+    dT [1 - exp(-G k t)], of it the share 1/C_A to the hub and 1/C_I to the shaft, each over k: `time_to_close` turned round.
+    apart  hub over shaft at the start [K];  gap  on the radius [mm]
+    Raises: ValueError for a gap not above 0.  Validity, source: as `time_to_close`.
+
+    >>> ring = Ring(bore=100, outside=140, length=30, density=8770, specific_heat=377, emissivity=0.6)
+    >>> solid = Ring(bore=0, outside=100, length=30, density=7850, specific_heat=470, emissivity=0.6)
+    >>> lost, gained = over_the_shaft(ring, solid, apart=100, gap=0.05, seconds=42.9)
+    >>> round(100.0 * (18.4e-6 * lost + 12e-6 * gained), 4)
+    0.07
+    """
+    if not gap > 0.0:
+        raise ValueError("the gap must be above 0")
+    conductance, share = _exchange(hub, shaft, gap)
+    gone = apart * -math.expm1(-conductance * share * seconds)
+    return gone / (hub.heat_capacity * share), gone / (shaft.heat_capacity * share)
+
+
+def _exchange(hub: Ring, shaft: Ring, gap: float) -> tuple[float, float]:
+    """Conductance of the gap [W/K], and 1/C_A + 1/C_I [K/J]. Source: conduction through a thin layer."""
+    conductance = AIR_CONDUCTIVITY * math.pi * hub.bore * hub.length / gap * 1e-3
+    return conductance, 1.0 / hub.heat_capacity + 1.0 / shaft.heat_capacity

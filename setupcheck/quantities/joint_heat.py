@@ -23,6 +23,7 @@ from setupcheck.quantities.joining import JointSizes
 from setupcheck.quantities.pairing import Pair
 from setupcheck.quantities.shop import Floor
 from setupcheck.quantities.stuff import material_of
+from setupcheck.record import record
 
 SOAK_PER_MM = 180.0
 """Seconds in an oven for each mm of wall. Source: a coupling maker's instruction (excerpt opened); still air, no fan."""
@@ -121,6 +122,32 @@ def window(
     """
     if at_shaft <= needed:
         return None
+    found = over(floor, join, pair, sizes, shaft_at, op)
+    if found is None or isinstance(found, Open):
+        return found
+    grows = pair.hub.heating.high  # what the bore closes for each kelvin, at most
+    return time_to_close(
+        found.hub,
+        found.shaft,
+        closes=(1.0 - LEFT_WHEN_IT_GRIPS) * joining_play(sizes.nominal) + grows * pair.diameter * (at_shaft - needed),
+        apart=at_shaft - found.coldest,
+        gap=found.gap,
+        expansions=(grows, contraction(floor, join, found.coldest)),
+    )
+
+
+@record
+class Over:
+    """Hub and shaft over each other before they touch: rings, the shaft as cold as it can be [degC], gap on the radius [mm]."""
+
+    hub: Ring
+    shaft: Ring
+    coldest: float
+    gap: float
+
+
+def over(floor: Floor, join: Join, pair: Pair, sizes: JointSizes, shaft_at: float, op: int) -> Over | Open | None:
+    """Hub and shaft as the hub goes over it; None where the seat is no plain round surface. Source: as `window`."""
     seat = seat_of(floor, join, DULL)
     if seat is None or isinstance(seat, Open):
         return seat
@@ -130,17 +157,8 @@ def window(
         if isinstance(start, Open):
             return start
         coldest, _ = start
-    play = joining_play(sizes.nominal)
-    grows = pair.hub.heating.high  # what the bore closes for each kelvin, at most
     hub = ring_of(pair)
-    return time_to_close(
-        hub,
-        replace(seat, length=hub.length),
-        closes=(1.0 - LEFT_WHEN_IT_GRIPS) * play + grows * pair.diameter * (at_shaft - needed),
-        apart=at_shaft - coldest,
-        gap=play / 2.0,
-        expansions=(grows, contraction(floor, join, coldest)),
-    )
+    return Over(hub, replace(seat, length=hub.length), coldest, joining_play(sizes.nominal) / 2.0)
 
 
 def bites_at(floor: Floor, join: Join, needed: float, sizes: JointSizes) -> float | None:

@@ -11,7 +11,7 @@ from pathlib import Path
 
 from setupcheck.errors import JobError
 from setupcheck.flow import load_job, prepare, review, vary
-from setupcheck.jobfile.changing import Change
+from setupcheck.jobfile.changing import Change, changed
 from setupcheck.jobfile.ranging import read_range
 from setupcheck.jobfile.reading import read_job_text
 from setupcheck.report.index_table import as_index_table
@@ -66,6 +66,27 @@ def route_pictures() -> dict[str, str]:
     drawn = pictures(review(ROOT / "jobs" / "rotator-worm-wheel.yaml"))
     names = {"datums": "datums", "stack": "stack-1", "axial": "axial"}
     return {f"picture-{name}.svg": drawn[key].draw() for name, key in names.items()}
+    return {"vary-range.svg": as_drawing(swept()), **pictures_of_heat_and_pitch()}
+
+
+HIGH_AT = (
+    ("setups.50.hold.centre.runout", "{at_most: 10 um, measured: 8 um, uncertainty: 1 um, high_at: 30 deg}"),
+    ("setups.40.hold.centre.runout", "{at_most: 10 um, measured: 7 um, uncertainty: 1 um, high_at: 100 deg}"),
+    ("setups.40.hold.square.face_runout", "{measured: 6 um, uncertainty: 1 um, high_at: 200 deg}"),
+)
+"""Directions that a dial would have shown on the worm wheel. Invented: no shipped job has any."""
+
+
+def pictures_of_heat_and_pitch() -> dict[str, str]:
+    """One of each family, of the worm wheel."""
+    wheel = load_job(ROOT / "jobs" / "rotator-worm-wheel.yaml")
+    shown = pictures(review(wheel))
+    known = pictures(review(changed(wheel, [Change(*one) for one in HIGH_AT])))
+    return {
+        "picture-heating.svg": shown["heating-70"].draw(),
+        "picture-pitch.svg": shown["pitch-1"].draw(),
+        "picture-high-spots.svg": known["high-spots-5"].draw(),
+    }
 
 
 def varied() -> str:

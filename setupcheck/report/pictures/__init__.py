@@ -37,3 +37,8 @@ def _all(found: Review, read: ReadBack | None) -> Iterator[Picture]:
     yield from datums.offered(found)
     yield from axial.offered(found)
     yield from stacks.offered(found)
+    from setupcheck.report.pictures import heating, high_spots, pitch
+
+    yield from high_spots.offered(found)
+    yield from heating.offered(found)
+    yield from pitch.offered(found, read)
