@@ -19,6 +19,9 @@ MOST_OFFERED = 8
 LONGEST_CHANGE = 2_000
 """Characters of one change. Source: our screening choice; an entry of a job file is one line."""
 
+OPENED: tuple[Loc, ...] = (("mesh", "backlash_read"), ("mesh", "backlash_read", "readings"))
+"""Maps that a job begins without and that are filled one entry at a time: a change inside them opens them."""
+
 
 @record
 class Change:
@@ -114,7 +117,7 @@ def _value(change: Change) -> Data:
 
 
 def _way(loaded: LoadedJob, change: Change) -> Loc:
-    """The way to an entry; all of it is in the file but the last step, which may be new.
+    """The way to an entry; all of it is in the file but the last step, which may be new, and the maps of OPENED.
 
     Raises: JobError with the names that are known where the path leaves the file.
     """
@@ -129,6 +132,8 @@ def _way(loaded: LoadedJob, change: Change) -> Loc:
                 node = node[step]
             elif last:
                 node = None
+            elif loc[: at + 1] in OPENED:
+                node = {}
             else:
                 raise _refused(loaded, change, place, f"{quoted(step)} is not in {around}", _offer(step, node))
         elif isinstance(node, list):

@@ -1,4 +1,4 @@
-"""Prove-out gaps that cannot be: on what is no toothing, deeper than the cut, or numbers of gaps that are not there. Sizes mm."""
+"""Readings gap by gap that cannot be: prove-out gaps and backlash read, at gaps that are not there or twice. Sizes mm."""
 
 from __future__ import annotations
 
@@ -13,7 +13,13 @@ from setupcheck.notation import quoted
 
 
 def unlikely(drawing: Drawing) -> Iterator[Miss]:
-    """All prove-out gaps that contradict the cut they belong to."""
+    """All prove-out gaps that contradict the cut they belong to, and backlash read at gaps that the wheel has not."""
+    mesh = map_of(drawing.data.get("mesh"))
+    wheel = drawing.ref(mesh.get("wheel"))
+    if wheel is not None:
+        read = map_of(map_of(mesh.get("backlash_read")).get("readings"))
+        for gap, message in _gaps(read, wheel.surface, count_of(drawing.surface(wheel))):
+            yield Miss(("mesh", "backlash_read", "readings", gap), message, key=True)
     for i, setup in enumerate(drawing.setups):
         for name, ref, cut in drawing.cut_by(setup):
             if "prove_out" not in cut:

@@ -6,6 +6,7 @@ from typing import TYPE_CHECKING
 
 from setupcheck.flow import Review
 from setupcheck.notation import show
+from setupcheck.quantities.backlash_read import PATH
 from setupcheck.quantities.finished import finished
 from setupcheck.report.causes import cause_in_parts
 from setupcheck.report.wording import finer, on_the_dial
@@ -32,6 +33,10 @@ INSTEAD = {
     "torque": "Take more interference, a longer seat or better friction, add a key or pins, or ask for less.",
 }
 """What is left of requirements that no holding changes."""
+AS_READ = (
+    "Nothing in the file closes what was read on the wheel. True its teeth to the axis they turn about, or turn it half a turn on "
+    "its seat, and read again; or ask for less."
+)
 
 
 def remedy_in_words(found: Review, finding: Finding) -> str:
@@ -53,6 +58,8 @@ def _last_resort(found: Review, finding: Finding) -> str:
         return finding.remedy
     if found.loaded.job.done is not None:
         return ELSE_DONE
+    if any(path == PATH for share in result.combined.shares for path in share.cause.paths):
+        return AS_READ
     instead = INSTEAD.get(result.stack.require.what)
     if instead is not None:
         return instead
@@ -79,6 +86,9 @@ def _worked_out(remedy: Remedy, *, inches: bool) -> str:
     if remedy.again is not None:
         unit, digits = ("thou", 1) if inches else ("um", 0)
         more = show(abs(remedy.again.deeper), unit, digits)
+        if remedy.again.in_place:
+            way = "farther apart" if remedy.again.deeper > 0.0 else "closer together"
+            return f"Bring the axes {more} {way} (mesh.centre_distance), and read the backlash again ({remedy.again.path})."
         if remedy.again.deeper > 0.0:
             return f"Cut the gaps {more} deeper on the radius with the same insert, and measure again ({remedy.again.path})."
         return f"Gaps are not cut narrower: bring the axes {more} closer together (mesh.centre_distance), or cut another wheel."
