@@ -92,7 +92,7 @@ def widest_stretch(gaps: Mapping[int, float] | tuple[int, ...], count: int) -> t
     True
     """
     order = sorted(gaps)
-    each = zip(order, order[1:] + [order[0] + count], strict=True)
+    each = zip(order, [*order[1:], order[0] + count], strict=True)
     wide, one, other = max((b - a, -a, b) for a, b in each)
     return math.tau * wide / count, -one, (other - 1) % count + 1
 

@@ -149,9 +149,7 @@ def _of_the_readings(floor: Floor, stack: Stack, read: AsRead | Open) -> Built |
 
 def along_of(floor: Floor, stack: Stack, found: Drive) -> float:
     """From the arc at the reference circle to what the requirement speaks of. Source: quantities.backlash_read."""
-    return backlash_read.factor_of(
-        floor, stack.require.along or "circular", found, f"require[{stack.index + 1}].along"
-    )
+    return backlash_read.factor_of(floor, stack.require.along or "circular", found, f"require[{stack.index + 1}].along")
 
 
 def gap_of_insert(floor: Floor, cut: WheelCut, width: float) -> float:
@@ -351,11 +349,18 @@ class Served:
 
 def _served(floor: Floor, found: Drive, *, room: float = REFERENCE) -> Served | Open:
     """Change of the backlash and of the pitch over the service temperatures from what they are at `room`, it among them."""
+    mesh = floor.loaded.job.mesh
+    assert mesh is not None
+    return warmed(floor, found, mesh.serves_at or _of_the_last_joint(floor), room=room)
+
+
+def warmed(floor: Floor, found: Drive, served: tuple[float, ...] | None, *, room: float = REFERENCE) -> Served | Open:
+    """Change of the backlash and of the pitch of a whole drive that goes from `room` through some temperatures [degC].
+
+    Source: linear expansion, `thermal_backlash`.
+    """
     mesh, worm = floor.loaded.job.mesh, floor.loaded.job.worm
     assert mesh is not None and worm is not None
-    served = mesh.serves_at
-    if served is None:
-        served = _of_the_last_joint(floor)
     missing: tuple[str, ...] = () if served is not None else ("mesh.serves_at",)
     missing += () if mesh.housing is not None else ("mesh.housing",)
     missing += () if worm.material is not None else ("worm.material",)

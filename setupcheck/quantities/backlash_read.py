@@ -195,9 +195,9 @@ def ruling(floor: Floor, stack: Stack) -> AsRead | Open | None:
     ref, wheel = floor.loaded.ref(stack.of), floor.loaded.ref(mesh.wheel)
     if (ref.part, ref.surface, ref.op) != (wheel.part, wheel.surface, wheel.op):
         return None
-    if place is not None and place.axis is not None and stack.about:
-        if floor.loaded.ref(stack.about) != floor.loaded.ref(place.axis):
-            return None
+    axis = place.axis if place is not None else None
+    if axis is not None and stack.about and floor.loaded.ref(stack.about) != floor.loaded.ref(axis):
+        return None
     found = drive(floor)
     if not isinstance(found, Drive):
         return found
@@ -225,5 +225,3 @@ def _turned(name: str, radius: float, spread: float) -> Account:
     if radius <= 0.0 and spread <= 0.0:
         return Account()
     return Account.of(Cause(name, "ring", high=radius, spread=spread, mode="measured", paths=(PATH,)))
-
-
