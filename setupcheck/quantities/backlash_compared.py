@@ -128,16 +128,23 @@ def says(read: AsRead) -> str:
     """Where it is tight and what that tells, as a sentence without its end. Source: least squares."""
     tight = f"tightest at gap {read.tightest} as read"
     if not read.is_proved:
+        if max(read.arcs.values()) - min(read.arcs.values()) <= read.uncertainty:
+            return "no tight place is proved: the readings differ by no more than one is known to"
         return f"{tight}; no wave is proved, its size is within its uncertainty"
     return f"{tight}, by the wave near gap {read.high_spot}: there the teeth stand farthest out"
+
+
+def binds(read: AsRead) -> str | None:
+    """Places where the dial did not travel, as a sentence without its end; None where it did. Source: the job file."""
+    still = [gap for gap, value in sorted(read.given.by_gap.items()) if value == 0.0]
+    named = ", ".join(f"gap {gap}" for gap in still)
+    return f"no play at {named}: whether it only touches there or binds cannot be read" if still else None
 
 
 def sight(read: AsRead) -> str:
     """What so many places cannot show, as a sentence without its end. Source: sampling of waves."""
     most = (len(read.arcs) - 1) // 2
-    seen = (
-        "one wave a turn, an oval ring looks like scatter" if most < 2 else f"waves of up to {most} a turn at the best"
-    )
+    seen = "one wave a turn, an oval ring looks like scatter" if most < 2 else f"waves of up to {most} a turn at best"
     return f"{len(read.arcs)} places tell {seen}; {SHOWN}"
 
 
@@ -294,6 +301,7 @@ AS_READ = (
     _row("eccentricity", "um", 1, eccentricity, _READ, "eccentricity of the gaps that makes the wave"),
     _row("high_spot", "1", 0, high_spot, _READ, "gap where the teeth stand farthest out"),
     _row("says", "", 0, says, _READ, "where it is tight, in words"),
+    _row("binds", "", 0, binds, _READ, "places without any play"),
     _row("sight", "", 0, sight, _READ, "what so many places cannot show"),
     _row("plan", "", 0, planned, {**_FLOOR, **_READ}, "the plan of what was read"),
     _row("miss", "um", 1, miss, _BOTH, "mean as read against the middle of the plan"),

@@ -204,6 +204,19 @@ def ruling(floor: Floor, stack: Stack) -> AsRead | Open | None:
     return None if lacking(given, found.teeth) else as_read(floor, found)
 
 
+def apart(floor: Floor, farther: float) -> BacklashRead | None:
+    """The readings as they would be with the axes so much farther apart [mm]; None where there are none.
+
+    2 tan(alpha) along the reference circle for each of it.  Source: rack rolling on the wheel's reference circle.
+    """
+    mesh, found = floor.loaded.job.mesh, drive(floor)
+    given = mesh.backlash_read if mesh is not None else None
+    if given is None or not isinstance(found, Drive):
+        return given
+    more = farther * 2.0 * math.tan(found.pressure_angle) * factor_of(floor, given.along, found, f"{PATH}.along")
+    return given.model_copy(update={"readings": {name: value + more for name, value in given.readings.items()}})
+
+
 def over_a_turn(read: AsRead) -> tuple[Account, Account]:
     """(middle between the ends with the uncertainty of a reading, what swings about it as an eccentricity) [mm].
 

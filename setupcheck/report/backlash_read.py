@@ -13,9 +13,10 @@ from setupcheck.report.worked_out import filled
 
 SENTENCES = (
     "from {read.least} to {read.largest}, mean {read.mean}, one reading is known to ± {read.uncertainty}",
-    "it swings by {read.swing} ± {read.swing_uncertainty} once a turn, plan and reading allow {read.swing_allowed}",
+    "it swings by {read.swing} ± {read.swing_uncertainty} over a turn, plan and reading allow {read.swing_allowed}",
     "that is an eccentricity of {read.eccentricity}, the plan has up to {read.planned_eccentricity}",
     "{read.says}",
+    "{read.binds}",
     "the mean is {read.miss} off the middle of its plan, plan and reading allow {read.allowed}",
     "the reading farthest beside the wave stands {read.off_wave} off it",
     "{read.sight}",

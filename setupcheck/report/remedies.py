@@ -56,10 +56,10 @@ def _last_resort(found: Review, finding: Finding) -> str:
     result = found.results.get(finding.key)
     if result is None:
         return finding.remedy
-    if found.loaded.job.done is not None:
-        return ELSE_DONE
     if any(path == PATH for share in result.combined.shares for path in share.cause.paths):
         return _as_read(found, result)
+    if found.loaded.job.done is not None:
+        return ELSE_DONE
     instead = INSTEAD.get(result.stack.require.what)
     if instead is not None:
         return instead
