@@ -133,7 +133,8 @@ def _of_the_readings(floor: Floor, stack: Stack, read: AsRead | Open) -> Built |
     Source: the readings; `_served`, `_misfit`.
     """
     found = drive(floor)
-    assert isinstance(found, Drive)  # or there would be no reading of it
+    if not isinstance(found, Drive):
+        return all_missing(found)
     served = _served(floor, found, room=floor.loaded.job.room)
     if isinstance(read, Open) or isinstance(served, Open):
         return all_missing(read, served)

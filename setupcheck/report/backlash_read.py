@@ -6,8 +6,8 @@ from collections.abc import Iterator
 
 from setupcheck.flow import Review
 from setupcheck.notation import show
-from setupcheck.quantities.backlash_read import AsRead
-from setupcheck.quantities.book import INCH, Known, Open, Scope
+from setupcheck.quantities.backlash_read import PATH, AsRead
+from setupcheck.quantities.book import Known, Open, Scope
 from setupcheck.report.wording import clean, wrap
 from setupcheck.report.worked_out import filled
 
@@ -34,24 +34,26 @@ def backlash_read(found: Review) -> Iterator[str]:
         if isinstance(answer, Known) and isinstance(answer.value, AsRead):
             yield from _block(found, scope, answer.value)
         else:
-            yield from _line(_lacking(found, scope, answer))
+            yield from _line(_lacking(answer))
 
 
-def _lacking(found: Review, scope: Scope, answer: object) -> str:
+def _lacking(answer: object) -> str:
     """What is missing; no worm, or no wheel of one, has no such readings."""
     if not isinstance(answer, Open):
         return "told of a worm and its wheel only"
     why = answer.because or f"fill {', '.join(answer.missing)}"
-    few = isinstance(found.book.get("read.places", scope), Open)
+    few = any(path == f"{PATH}.readings" for path in answer.missing)
     return f"{why}; the plan's own backlash goes on to count" if few else why
 
 
 def _block(found: Review, scope: Scope, read: AsRead) -> Iterator[str]:
-    unit = INCH["um"] if found.book.inches else "um"
-    each = ", ".join(f"gap {gap} {show(arc, unit, 1)}" for gap, arc in sorted(read.arcs.items()))
+    unit, digits = ("thou", 2) if found.book.inches else ("um", 1)
+    each = ", ".join(f"gap {gap} {show(arc, unit, digits)}" for gap, arc in sorted(read.arcs.items()))
     yield from _line(each)
+    if read.given.along != "circular":
+        yield from _line(f"read {_along(read.given.along)}, and brought to the reference circle")
     if read.end_float > 0.0:
-        taken = show(read.end_float, unit, 1)
+        taken = show(read.end_float, unit, digits)
         yield from _line(
             f"the worm's end float of {taken} is taken out of each, as the rocking pushes it from stop to stop"
         )
@@ -59,6 +61,10 @@ def _block(found: Review, scope: Scope, read: AsRead) -> Iterator[str]:
         said = filled(found, scope, sentence)
         if said:
             yield from _line(said)
+
+
+def _along(said: str) -> str:
+    return "square to the flank" if said == "normal" else f"with a dial {clean(said)}"
 
 
 def _line(text: str) -> list[str]:

@@ -24,6 +24,7 @@ from setupcheck.report.text import as_text
 from setupcheck.report.uncomputed import uncomputed
 from setupcheck.report.working import as_working
 from setupcheck.shipped import shipped
+from tests.jobs.worm_jobs import worm_job
 
 ROTATOR = shipped("jobs/rotator-worm-wheel.yaml").read_text("utf-8")
 MESH = "mesh: {wheel: wheel.teeth,"
@@ -232,6 +233,13 @@ def test_readings_of_which_nobody_says_enough_leave_it_open(
     assert f"fill {missing}" in block(text)
 
 
+def test_a_worm_that_is_not_known_leaves_the_readings_open_and_is_asked_for() -> None:
+    text = job(TYPED, TAKEN, ("  pressure_angle: 20 deg\n", ""))
+    opened = [f for f in judged(text).evaluation.findings if f.at == "require[10]" and f.verdict == "open"]
+    assert opened and all("worm.pressure_angle" in f.missing for f in opened)
+    assert "fill worm.pressure_angle" in block(text) and "goes on to count" not in block(text)
+
+
 def test_a_worm_without_end_float_needs_no_word_about_it() -> None:
     text = job(TYPED, "uncertainty: 2 um", ("  end_float: 10 um\n", "  end_float: 0 um\n"))
     assert ends(text) == pytest.approx(ends(job(TYPED)))
@@ -278,8 +286,7 @@ def test_a_mean_off_its_plan_warns_in_numbers_of_the_axes() -> None:
         off = um(text, "read.miss")
         said = remedy(text, "MESH-014")
         assert way in said and f"as if the axes stood {off / SLOPE:.0f} um" in said
-    inside = um(ROTATOR.replace(MESH, MESH), "read.miss") if False else um(job(TYPED), "read.allowed")
-    assert inside == pytest.approx(35.8 + 2.0, abs=0.1)
+    assert um(job(TYPED), "read.allowed") == pytest.approx(35.8 + 2.0, abs=0.1)
 
 
 def test_a_swing_beyond_the_plan_names_the_move_and_the_gap_across() -> None:
@@ -412,13 +419,37 @@ def test_json_has_places_wave_and_high_spot() -> None:
     assert sum(one["off_wave"] for one in told["places"]) == pytest.approx(0.0, abs=1e-9)
 
 
-def test_an_inch_file_prints_thou() -> None:
-    inch = job(TYPED).replace("units: mm", "units: mm")
-    assert "gap 1 62.0 um" in block(inch)
+def test_an_inch_file_prints_thou_and_reads_bare_radii_in_inches() -> None:
+    """The pair of another test in inches, with readings in thou at twice the reference circle."""
+    inch = worm_job(starts=1, hand="right", module=0.06, worm=0.88, teeth=90, face=0.44, radius=0.6, budget="0.2 thou")
+    for old, new in (
+        ("units: mm", "units: in"),
+        (" mm, uncertainty: 1 um", " in, uncertainty: 0.04 thou"),
+        (" ±0.010}", " ±0.0004}"),
+        (" ±0.01,", " ±0.0004,"),
+        ("from: -40,", "from: -1.6,"),
+        ("at: -35", "at: -1.4"),
+        ("at: -5,", "at: -0.2,"),
+        ("to: 20.44", "to: 1.24"),
+        ("to: 22.44", "to: 1.3"),
+        (" contact: exact,", ""),
+    ):
+        inch = inch.replace(old, new)
+    said = ", ".join(f"gap {gap}: {4.0 + 0.4 * math.cos(math.tau * (gap - 1) / 90)!r} thou" for gap in range(1, 91, 10))
+    more = "along: at 5.4, uncertainty: 0.2 thou, end_float: taken-out"
+    told = block(inch.replace(MESH, f"{MESH} backlash_read: {{readings: {{{said}}}, {more}}},"))
+    assert "gap 1 2.20 thou" in told and "mean 2.00 thou" in told and "± 0.10 thou" in told
+    assert "read with a dial at 5.4, and brought to the reference circle" in told
+
+
+def test_the_working_names_the_readings_and_how_the_swing_came_about() -> None:
     found = judged(job(TYPED))
     assert isinstance(answer(job(TYPED), "read.as_read"), AsRead)
-    assert "wheel, its backlash as read" in as_working(found.loaded, found.book, "require[10]")
-    assert "amplitude" in as_working(found.loaded, found.book, "read.swing")
+    told = re.sub(r"\s+", " ", as_working(found.loaded, found.book, "require[10]"))
+    assert "wheel, its backlash as read, over the turn: gives 7.7 um" in told and "gap 10 58.0 um" in told
+    assert "twice the amplitude" in as_working(found.loaded, found.book, "read.swing").replace("\n", " ")
+    assert "read square to the flank" in block(job(TYPED, f"along: normal, {TAKEN}"))
+    assert "brought to" not in block(job(TYPED))
 
 
 @pytest.mark.parametrize(
