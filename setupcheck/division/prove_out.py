@@ -96,7 +96,7 @@ def reduce(readings: Mapping[int, float], count: int) -> Ring:
     rows = [(1.0, math.cos(angle_of(gap, count)), math.sin(angle_of(gap, count))) for gap in readings]
     values = list(readings.values())
     normal = [[sum(row[i] * row[j] for row in rows) for j in range(3)] for i in range(3)]
-    inverse = _inverse(normal, len(rows))
+    inverse = inverse_of(normal, len(rows))
     right = [sum(row[i] * value for row, value in zip(rows, values, strict=True)) for i in range(3)]
     mean, x, y = (sum(inverse[i][j] * right[j] for j in range(3)) for i in range(3))
     free = len(rows) - 3
@@ -110,7 +110,7 @@ def reduce(readings: Mapping[int, float], count: int) -> Ring:
     return Ring(mean, x, y, spread(cos, sin), spread(-sin, cos), math.sqrt(left / free) if free else None)
 
 
-def _inverse(m: list[list[float]], rows: int) -> list[list[float]]:
+def inverse_of(m: list[list[float]], rows: int) -> list[list[float]]:
     """Inverse of a symmetric 3 x 3 matrix by cofactors. Source: textbook."""
     (a, b, c), (_, d, e), (_, _, f) = m
     determinant = a * (d * f - e * e) - b * (b * f - c * e) + c * (b * e - c * d)

@@ -1,7 +1,8 @@
-"""Prove-out gaps that cannot be: on what is no toothing, deeper than the cut, or numbers of gaps that are not there. Sizes mm."""
+"""Readings gap by gap that cannot be: prove-out gaps and backlash read, at gaps that are not there or twice. Sizes mm."""
 
 from __future__ import annotations
 
+import math
 from collections.abc import Iterator, Mapping
 
 from setupcheck.jobfile.drawing import Drawing, count_of, spoken
@@ -13,7 +14,8 @@ from setupcheck.notation import quoted
 
 
 def unlikely(drawing: Drawing) -> Iterator[Miss]:
-    """All prove-out gaps that contradict the cut they belong to."""
+    """All prove-out gaps that contradict the cut they belong to, and backlash read at gaps that the wheel has not."""
+    yield from _backlash(drawing)
     for i, setup in enumerate(drawing.setups):
         for name, ref, cut in drawing.cut_by(setup):
             if "prove_out" not in cut:
@@ -37,6 +39,24 @@ def unlikely(drawing: Drawing) -> Iterator[Miss]:
             if about is not None and not isinstance(about, Round):
                 says = f"a part does not turn about {spoken(about)}"
                 yield Miss((*path, "about"), f"{says}. Write the cylinder or bore whose axis it turned about")
+
+
+def _backlash(drawing: Drawing) -> Iterator[Miss]:
+    """Backlash read at gaps that the wheel has not, or at one twice, or larger than a pitch: more than any gap is wide."""
+    mesh, path = map_of(drawing.data.get("mesh")), ("mesh", "backlash_read", "readings")
+    wheel, read = drawing.ref(mesh.get("wheel")), map_of(map_of(mesh.get("backlash_read")).get("readings"))
+    teeth = drawing.surface(wheel)
+    if wheel is None or not isinstance(teeth, Toothing):
+        return
+    for gap, message in _gaps(read, wheel.surface, teeth.count):
+        yield Miss((*path, gap), message, key=True)
+    pitch = math.pi * teeth.on_circle / teeth.count
+    for gap, value in read.items():
+        travel = drawing.length(value)
+        if travel is not None and travel > pitch:
+            says = f"backlash of {drawing.shown(travel)} is more than the pitch of the teeth"
+            hint = f"{drawing.shown(round(pitch, 2))}. Write what a dial on the wheel travels between both flanks"
+            yield Miss((*path, gap), f"{says}, {hint}")
 
 
 def _gaps(readings: Mapping[str, object], name: str, count: int | None) -> Iterator[tuple[str, str]]:

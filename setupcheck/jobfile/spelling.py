@@ -10,7 +10,7 @@ from typing import Annotated, Any, get_args, get_origin
 
 from pydantic import BaseModel
 
-from setupcheck.jobfile import asked, dividing, grinding, marks, models, service, setups, types, worm
+from setupcheck.jobfile import asked, backlash_read, dividing, grinding, marks, models, service, setups, types, worm
 
 Schema = dict[str, Any]
 
@@ -102,6 +102,7 @@ _TYPES: tuple[tuple[object, Schema], ...] = (
     (dividing.Step, _text("an angle, with x-y a length", '1"', "5 um")),
     (dividing.Target, _text("a distance with its unit", "12 m")),
     (grinding.Small, _SMALL),
+    (backlash_read.Played, _text("travel of a dial between both flanks, with its unit", "62 um", "0.058 mm")),
     (worm.DiametralPitch, _number("a plain number", 16)),
     (worm.Quotient, _number("a plain number", 12)),
     (worm.Budget, _text("an error above zero, with its unit", "10 um")),

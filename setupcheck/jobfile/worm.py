@@ -9,6 +9,7 @@ from typing import Annotated, Literal
 from pydantic import AfterValidator, Field, ValidationInfo, model_validator
 
 from setupcheck import notation
+from setupcheck.jobfile.backlash_read import BacklashRead
 from setupcheck.jobfile.marks import Mark
 from setupcheck.jobfile.models import Dim, Dimension, RunOut
 from setupcheck.jobfile.types import (
@@ -175,6 +176,7 @@ class Mesh(Shop):
     error_budget  transmission error that the cut may leave, along the reference circle, end to end over one pitch [mm]
     mark     what blue showed on the finished wheel
     eccentric  throw of an eccentric that sets the centre distance, distance of its two axes [mm]
+    backlash_read  backlash of the finished wheel in its housing, as read place by place
     """
 
     wheel: str
@@ -189,6 +191,7 @@ class Mesh(Shop):
     error_budget: Budget | None = None
     mark: Mark | None = None
     eccentric: Size | None = None
+    backlash_read: BacklashRead | None = None
 
     @property
     def ball_used(self) -> float | None:

@@ -19,9 +19,9 @@ from setupcheck.ledger.account import Account
 from setupcheck.ledger.causes import Cause
 from setupcheck.ledger.figures import OverATurn
 from setupcheck.ledger.route import State
-from setupcheck.notation import NotationError, length
 from setupcheck.physics.materials import Range
-from setupcheck.quantities import growing, pairing, strength
+from setupcheck.quantities import backlash_read, growing, pairing, strength
+from setupcheck.quantities.backlash_read import AsRead
 from setupcheck.quantities.book import Open, OutOfRange, all_missing
 from setupcheck.quantities.causes import Entry, length_error, size_error
 from setupcheck.quantities.cutter_shape import insert_width, tilt_of
@@ -34,7 +34,6 @@ from setupcheck.quantities.shop import Floor
 from setupcheck.quantities.stuff import expansion_of, material_of
 from setupcheck.quantities.thread import Thread, thread
 from setupcheck.record import record
-from setupcheck.worm.geometry import normal_pressure_angle
 
 ALONG = ("circular", "normal")
 """Ways a backlash is stated beside `at` a radius."""
@@ -54,11 +53,58 @@ class Span:
         return whole if cause is None or self.high <= self.low else whole + Account.of(cause)
 
 
+@record(eq=False)
+class Chain:
+    """What makes the backlash at 20 degC, one gap with the thread in its middle, before flanks that do not fit take of it.
+
+    open    gap less thread, and what the axes stand apart [mm];  depth  how much deeper than planned it is cut [mm]
+    strain  of the wheel's pitch by the growth of its hub;  offset  of the ring of gaps [mm];  teeth, axis  as they are at last
+    """
+
+    found: Drive
+    cut: WheelCut
+    open: Account
+    depth: Account
+    strain: Account
+    teeth: State
+    axis: State
+
+    @property
+    def offset(self) -> Account:
+        """How far the ring of gaps runs off the axis it works about [mm]."""
+        return self.teeth.offset - self.axis.axis_at(self.teeth.z)
+
+    @property
+    def cold(self) -> Account:
+        """Mean backlash at 20 degC along the reference circle [mm]."""
+        return self.open - _misfit(self.cut, self.depth, self.strain)
+
+
 def backlash(floor: Floor, stack: Stack) -> Built | Open:
-    """The figure of a required backlash, or what is missing for it.
+    """The figure of a required backlash, or what is missing for it; as it was read, where it was.
 
     Source: rack rolling on the wheel's reference circle, derived here; thermal chain and growth as in their modules.
     """
+    read = backlash_read.ruling(floor, stack)
+    if read is not None:
+        return _of_the_readings(floor, stack, read)
+    found = drive(floor)
+    served = _served(floor, found) if isinstance(found, Drive) else None
+    made = chain(floor, stack)
+    if isinstance(made, Open) and not made.missing:  # of another kind of wheel, whatever its temperature
+        return made
+    if isinstance(made, Open) or not isinstance(served, Served):
+        return all_missing(made, served)
+    factor = along_of(floor, stack, made.found)
+    total = made.open + served.moved - _misfit(made.cut, made.depth, made.strain + served.strain)
+    slope = 2.0 * math.tan(made.found.pressure_angle)
+    figure = OverATurn(total * factor, made.offset, slope * factor, made.teeth.pattern)
+    g, r = made.teeth, made.axis
+    return Built(figure, second_order(lean=g.lean - r.lean, lever=abs(g.z - r.z)))
+
+
+def chain(floor: Floor, stack: Stack) -> Chain | Open:
+    """Every part of the backlash that the plan makes, or what is missing. Source: as `backlash`."""
     found = drive(floor)
     if found is None:
         return Open(("mesh.wheel",), "backlash is computed for a worm and its wheel")
@@ -69,44 +115,42 @@ def backlash(floor: Floor, stack: Stack) -> Built | Open:
     opened = [x for x in (found, both, made) if isinstance(x, Open)]
     if opened or not isinstance(found, Drive) or isinstance(both, Open) or not isinstance(made, WheelCut):
         return all_missing(*opened)
-    factor = along_of(floor, stack, found)
     g, r = both
-    served = _served(floor, found)
-    slope = 2.0 * math.tan(found.pressure_angle)
     gap, depth, mesh = gap_finished(floor, made, g), depth_of_cut(floor, made, g), _mesh(floor, found)
     grown = _growth(floor, found)
-    opened = [x for x in (gap, depth, mesh, grown, served) if isinstance(x, Open)]
+    opened = [x for x in (gap, depth, mesh, grown) if isinstance(x, Open)]
     if opened:
         return all_missing(*opened)
     assert isinstance(gap, Account) and isinstance(depth, Account) and isinstance(mesh, Account)
-    assert isinstance(grown, Account) and isinstance(served, Served)
-    strain = grown * (1.0 / found.wheel_diameter) + served.strain
-    total = gap + mesh + served.moved - _misfit(made, depth, strain)
-    figure = OverATurn(total * factor, g.offset - r.axis_at(g.z), slope * factor, g.pattern)
-    return Built(figure, second_order(lean=g.lean - r.lean, lever=abs(g.z - r.z)))
+    assert isinstance(grown, Account)
+    return Chain(found, made, gap + mesh, depth, grown * (1.0 / found.wheel_diameter), g, r)
+
+
+def _of_the_readings(floor: Floor, stack: Stack, read: AsRead | Open) -> Built | Open:
+    """The figure as read in the room: its least and largest, and what the temperatures of service change of it.
+
+    The pitch that the temperature strains may fit better or worse than it did: up to 2 w |strain| either way.
+    Source: the readings; `_served`, `_misfit`.
+    """
+    found = drive(floor)
+    if not isinstance(found, Drive):
+        return all_missing(found)
+    served = _served(floor, found, room=floor.loaded.job.room)
+    if isinstance(read, Open) or isinstance(served, Open):
+        return all_missing(read, served)
+    middle, swing = backlash_read.over_a_turn(read)
+    cut, name = wheel_cut(floor, found), "mesh, pitch of the wheel in service"
+    root = cut.root + (cut.cut.depth or 0.0) if isinstance(cut, WheelCut) else found.wheel_diameter / 2.0 + found.module
+    strained = 2.0 * _farthest(found, root) * served.strain.largest()
+    fits = Cause(name, "length", high=strained, mode="derived", paths=("mesh",))
+    factor = along_of(floor, stack, found)
+    total = middle + served.moved + (Account.of(fits) if strained > 0.0 else Account())
+    return Built(OverATurn(total * factor, swing, read.slope * factor), 0.0)
 
 
 def along_of(floor: Floor, stack: Stack, found: Drive) -> float:
-    """From the arc at the reference circle to what the requirement speaks of.
-
-    Raises: JobError for a word that is none.  Source: j_n = j_t cos(alpha_n) cos(g), ISO 1122-2 quantities (from memory).
-    """
-    said = stack.require.along or "circular"
-    if said == "circular":
-        return 1.0
-    if said == "normal":
-        return math.cos(normal_pressure_angle(found.pressure_angle, found.lead_angle)) * math.cos(found.lead_angle)
-    try:
-        radius = length(said.removeprefix("at").strip(), units=floor.loaded.job.units)
-    except NotationError:
-        radius = 0.0
-    if not said.startswith("at") or radius <= 0.0:
-        raise floor.problem(
-            f"require[{stack.index + 1}].along",
-            f"'{said}' is no way to state a backlash",
-            "Write circular, normal, or at and a radius, as in at 50 mm",
-        )
-    return radius / (found.wheel_diameter / 2.0)
+    """From the arc at the reference circle to what the requirement speaks of. Source: quantities.backlash_read."""
+    return backlash_read.factor_of(floor, stack.require.along or "circular", found, f"require[{stack.index + 1}].along")
 
 
 def gap_of_insert(floor: Floor, cut: WheelCut, width: float) -> float:
@@ -210,7 +254,7 @@ def _misfit(cut: WheelCut, depth: Account, strain: Account) -> Account:
     farthest from the middle.  Source: derived here; the rack in its gaps agrees in tests/unit/worm.
     """
     d = cut.drive
-    wheel, away = d.wheel_diameter / 2.0, _farthest(cut)
+    wheel, away = d.wheel_diameter / 2.0, _farthest(d, cut.root + (cut.cut.depth or 0.0))
     total = Account()
     for words, of, share in (("depth", depth, 2.0 * away / wheel), ("pitch", strain, 2.0 * away)):
         if of.largest() > 0.0:
@@ -219,15 +263,17 @@ def _misfit(cut: WheelCut, depth: Account, strain: Account) -> Account:
     return total
 
 
-def _farthest(cut: WheelCut) -> float:
+def _farthest(d: Drive, tip: float) -> float:
     """How far from the middle a gap is still touched, as arc at the rolling circle [mm]: by its tip, or by the worm's.
+
+    tip  radius of the wheel's tips in the mid-plane [mm]
 
     tip of the wheel: (sqrt(ra2^2 - rb^2) - r2 sin(alpha))/cos(alpha) + s/2;  worm: h/(sin(alpha) cos(alpha)) - s/2, h what
     the worm reaches past the rolling circle.  Source: line of action of rack and involute (textbook).
     """
-    d, wheel = cut.drive, cut.drive.wheel_diameter / 2.0
+    wheel = d.wheel_diameter / 2.0
     sine, cosine = math.sin(d.pressure_angle), math.cos(d.pressure_angle)
-    tip = max(cut.root + (cut.cut.depth or 0.0), wheel)
+    tip = max(tip, wheel)
     by_wheel = (math.sqrt(tip**2 - (wheel * cosine) ** 2) - wheel * sine) / cosine + d.thread / 2.0
     by_worm = (d.tip_diameter - d.pitch_diameter) / 2.0 / (sine * cosine) - d.thread / 2.0
     return max(by_wheel, by_worm)
@@ -302,13 +348,20 @@ class Served:
     strain: Account
 
 
-def _served(floor: Floor, found: Drive) -> Served | Open:
-    """Change of the backlash and of the pitch over the service temperatures, 20 degC among them."""
+def _served(floor: Floor, found: Drive, *, room: float = REFERENCE) -> Served | Open:
+    """Change of the backlash and of the pitch over the service temperatures from what they are at `room`, it among them."""
+    mesh = floor.loaded.job.mesh
+    assert mesh is not None
+    return warmed(floor, found, mesh.serves_at or _of_the_last_joint(floor), room=room)
+
+
+def warmed(floor: Floor, found: Drive, served: tuple[float, ...] | None, *, room: float = REFERENCE) -> Served | Open:
+    """Change of the backlash and of the pitch of a whole drive that goes from `room` through some temperatures [degC].
+
+    Source: linear expansion, `thermal_backlash`.
+    """
     mesh, worm = floor.loaded.job.mesh, floor.loaded.job.worm
     assert mesh is not None and worm is not None
-    served = mesh.serves_at
-    if served is None:
-        served = _of_the_last_joint(floor)
     missing: tuple[str, ...] = () if served is not None else ("mesh.serves_at",)
     missing += () if mesh.housing is not None else ("mesh.housing",)
     missing += () if worm.material is not None else ("worm.material",)
@@ -322,8 +375,8 @@ def _served(floor: Floor, found: Drive) -> Served | Open:
     if opened or isinstance(house, Open) or isinstance(screw, Open):
         return all_missing(*opened)
     each = [
-        (t - REFERENCE, h, w, s)
-        for t in (*served, REFERENCE)
+        (t - room, h, w, s)
+        for t in (*served, room)
         for h, w, s in product(_ends(house), _ends(wheel.heating), _ends(screw))
     ]
     moved = [thermal_backlash(found, rise=t, housing=h, wheel=w, worm=s) for t, h, w, s in each]

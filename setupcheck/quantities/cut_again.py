@@ -1,10 +1,11 @@
-"""A wheel measured over balls whose backlash only stands beside its limits: deeper gaps, or axes closer together. mm."""
+"""A wheel measured over balls, or with its worm, whose backlash only stands beside its limits: depth, or the axes. mm."""
 
 from __future__ import annotations
 
 import math
 
 from setupcheck.ledger.figures import OverATurn
+from setupcheck.quantities import backlash_read
 from setupcheck.quantities.gap_measured import PATH
 from setupcheck.quantities.judged import Result
 from setupcheck.quantities.shop import Floor
@@ -16,10 +17,14 @@ FINEST = 0.001
 
 @record
 class CutAgain:
-    """What the finished wheel still lacks on the radius [mm]: above zero deeper gaps, below zero axes closer together."""
+    """What the finished wheel still lacks on the radius [mm]: above zero deeper gaps, below zero axes closer together.
+
+    in_place  read in its housing, where the axes may move either way and deeper gaps are the second choice
+    """
 
     deeper: float
     path: str = PATH
+    in_place: bool = False
 
 
 def cut_again(floor: Floor, result: Result) -> CutAgain | None:
@@ -30,7 +35,10 @@ def cut_again(floor: Floor, result: Result) -> CutAgain | None:
     Source: rack rolling on the wheel's reference circle.
     """
     mesh, figure, stack = floor.loaded.job.mesh, result.figure, result.stack
-    if mesh is None or mesh.over_balls is None or not isinstance(figure, OverATurn) or stack.require.what != "backlash":
+    if mesh is None or not isinstance(figure, OverATurn) or stack.require.what != "backlash":
+        return None
+    in_place = backlash_read.ruling(floor, stack) is not None
+    if mesh.over_balls is None and not in_place:
         return None
     worst = result.combined.worst
     up = (stack.low - worst.low) / figure.factor if stack.low is not None else -math.inf
@@ -40,4 +48,6 @@ def cut_again(floor: Floor, result: Result) -> CutAgain | None:
         deeper = round((up + down) / 2.0 / step) * step
     else:
         deeper = math.ceil(up / step) * step if math.isfinite(up) else math.floor(down / step) * step
-    return CutAgain(deeper) if up <= deeper <= down and deeper != 0.0 else None
+    if not up <= deeper <= down or deeper == 0.0:
+        return None
+    return CutAgain(deeper, backlash_read.PATH, True) if in_place else CutAgain(deeper)

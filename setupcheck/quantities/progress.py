@@ -10,6 +10,7 @@ from setupcheck.jobfile.models import Dimension, Flat
 from setupcheck.jobfile.reading import LoadedJob
 from setupcheck.jobfile.setups import Cut, Job, Join, Setup, Spacer, Stop
 from setupcheck.notation import show
+from setupcheck.quantities import backlash_read
 from setupcheck.quantities.book import Open, OutOfRange, Quantity
 from setupcheck.quantities.finished import finished, to_come
 from setupcheck.quantities.gates import origins, reaches
@@ -57,15 +58,16 @@ def adjusters(floor: Floor) -> tuple[Adjuster, ...] | None:
     for setup in to_come(loaded.job):
         found += _of_join(loaded, setup) if setup.join is not None else _of_cuts(loaded, setup)
         found += _of_hold(loaded, setup)
-    return (*found, *_of_the_housing(loaded))
+    return (*found, *_of_the_housing(floor))
 
 
-def _of_the_housing(loaded: LoadedJob) -> Iterator[Adjuster]:
+def _of_the_housing(floor: Floor) -> Iterator[Adjuster]:
     """An eccentric that sets the centre distance: it stays open to the last. At most by its throw, less beside dead centre."""
-    mesh = loaded.job.mesh
+    loaded, mesh = floor.loaded, floor.loaded.job.mesh
     if mesh is None or mesh.eccentric is None or not isinstance(mesh.centre_distance, Dimension):
         return
-    apart = mesh.model_copy(update={"centre_distance": _longer(mesh.centre_distance)})
+    wider = backlash_read.apart(floor, TRIAL)  # what was read moves with the axes as well
+    apart = mesh.model_copy(update={"centre_distance": _longer(mesh.centre_distance), "backlash_read": wider})
     moved = _walked(loaded, loaded.job.model_copy(update={"mesh": apart}))
     most = show(mesh.eccentric, *(("in", 4) if loaded.job.units == "in" else ("mm", 3)))
     yield Adjuster(0, f"the eccentric of the housing, by {most} of centre distance at most", "mesh.eccentric", moved)

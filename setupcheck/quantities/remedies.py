@@ -183,7 +183,7 @@ def _of_the_cut(
     done = isinstance(cut, WheelCut) and cut.op in over
     again = cut_again(floor, result)
     if again is not None:
-        return (again if not done or again.deeper < 0.0 else None), None
+        return (again if not done or again.deeper < 0.0 or again.in_place else None), None
     return None, None if done else _another_insert(loaded, floor, result)
 
 

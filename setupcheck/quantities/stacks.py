@@ -9,6 +9,7 @@ from setupcheck.ledger import figures, route, teeth
 from setupcheck.ledger.account import Account
 from setupcheck.ledger.figures import Figure
 from setupcheck.ledger.route import State
+from setupcheck.quantities import backlash_read
 from setupcheck.quantities.backlash import backlash
 from setupcheck.quantities.book import Open
 from setupcheck.quantities.causes import BARE
@@ -145,7 +146,12 @@ def _oblique(floor: Floor, g: State, r: State) -> Account | Open:
 
 
 def _backlash_swing(floor: Floor, stack: Stack) -> Built | Open:
-    """Change of backlash over one turn: 4 e tan(alpha)."""
+    """Change of backlash over one turn: 4 e tan(alpha), or as it was read on the finished wheel."""
+    read = backlash_read.ruling(floor, stack)
+    if isinstance(read, Open):
+        return read
+    if read is not None:
+        return Built(figures.Vector((backlash_read.swinging(read),), 2.0 * read.slope), 0.0)
     found = pair(floor, stack)
     if isinstance(found, Open):
         return found

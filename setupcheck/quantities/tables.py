@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from setupcheck.quantities import holds, judged
 from setupcheck.quantities.advice import ADVICE
+from setupcheck.quantities.backlash_compared import AS_READ
 from setupcheck.quantities.book import Quantity
 from setupcheck.quantities.chilling import CHILLING
 from setupcheck.quantities.choosing import CHOOSING
@@ -302,6 +303,7 @@ TABLES: tuple[Quantity, ...] = (
     *THREAD,
     *WHEEL,
     *OVER_BALLS,
+    *AS_READ,
     *PLACE,
     *ADVICE,
     *CLAMP,

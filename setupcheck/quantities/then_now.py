@@ -31,6 +31,8 @@ MOST_NEXT = 3
 WORTH_IT = 0.02
 """Share of a limit below which measuring a cause is not worth naming. Source: our screening choice."""
 _TAKEN_OUT: Mapping[str, None] = dict.fromkeys(("measured", "uncertainty", "standard_uncertainty", "high_at"))
+_OF_THE_WHEEL = ("over_balls", "backlash_read")
+"""Keys of the mesh that are read on the cut wheel, and that insert, depth and route plan."""
 _SIZE_OUT: Mapping[str, None] = dict.fromkeys(("measured", "uncertainty", "at_temperature"))
 
 
@@ -91,7 +93,7 @@ def _record_without(node: BaseModel, path: str, aside: list[str]) -> BaseModel:
         mine = getattr(node, name)
         where = f"{path}.{type(node).model_fields[name].alias or name}".lstrip(".")
         planned_otherwise = isinstance(node, Cutter) and name == "profile" and node.insert is not None
-        if mine is not None and (planned_otherwise or (isinstance(node, Mesh) and name == "over_balls")):
+        if mine is not None and (planned_otherwise or (isinstance(node, Mesh) and name in _OF_THE_WHEEL)):
             aside.append(where)
             changed[name] = None
             continue

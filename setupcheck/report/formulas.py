@@ -65,7 +65,11 @@ FORMULAS: dict[str, tuple[str, str]] = {
         "distance of the worst tooth's middle from the worm's axis = error of length along the axis + pitch radius x lean",
         "leaning ring of teeth, derived here",
     ),
-    "backlash-swing": ("change of backlash over one turn = 4 e tan(pressure angle)", FLANK),
+    "backlash-swing": (
+        "change of backlash over one turn = 4 e tan(pressure angle); where it was read on the finished wheel, twice the "
+        "amplitude of the wave of one a turn, by least squares",
+        FLANK,
+    ),
     "length": (
         "distance of the two faces along the axis ± every error of length between them",
         "sum of the lengths, derived here",
@@ -84,7 +88,9 @@ FORMULAS: dict[str, tuple[str, str]] = {
         "tan(pressure angle) - growth of the hub x (tan(pressure angle) - thread / pitch circle) + what the temperature of "
         "the drive does, less and plus 2 e tan(pressure angle) over a turn; less what flanks lose that no longer fit each "
         "other: 2 w (error of depth / pitch radius + error of pitch), w how far from the middle a gap is touched. A gap "
-        "measured over balls takes the place of insert, depth and growth, but not of what they do to the flanks",
+        "measured over balls takes the place of insert, depth and growth, but not of what they do to the flanks. "
+        "Where it was read on the finished wheel at enough places, the least and largest of a turn take the place of all but "
+        "the temperature",
         "a rack that rolls on the wheel's pitch circle, derived here",
     ),
     "contact-length": (

@@ -10,6 +10,7 @@ from setupcheck.notation import FACTOR
 from setupcheck.quantities.book import INCH, Known, Scope
 from setupcheck.quantities.judged import Result
 from setupcheck.quantities.scopes import stack_of
+from setupcheck.report.backlash_read import backlash_read_as_data
 from setupcheck.report.contact import contacts_as_data
 from setupcheck.report.heating_plan import heating_plans_as_data
 from setupcheck.report.insert import inserts_as_data
@@ -83,6 +84,7 @@ def as_data(found: Review) -> dict[str, object]:
         "heating_plans": heating,
         "contacts": contact,
         "inserts": ground,
+        "backlash_read": backlash_read_as_data(found),
         "worked_out": lines,
         "findings": [_finding(found, f) for f in found.evaluation.findings],
         "cautions": [

@@ -6,12 +6,16 @@ from typing import TYPE_CHECKING
 
 from setupcheck.flow import Review
 from setupcheck.notation import show
+from setupcheck.quantities.backlash_read import PATH
+from setupcheck.quantities.book import Known
 from setupcheck.quantities.finished import finished
 from setupcheck.report.causes import cause_in_parts
 from setupcheck.report.wording import finer, on_the_dial
+from setupcheck.report.worked_out import filled
 from setupcheck.rulebook import Finding
 
 if TYPE_CHECKING:
+    from setupcheck.quantities.judged import Result
     from setupcheck.quantities.remedies import Remedy
 
 STACK_RULES = ("STACK-001", "STACK-002")
@@ -32,6 +36,7 @@ INSTEAD = {
     "torque": "Take more interference, a longer seat or better friction, add a key or pins, or ask for less.",
 }
 """What is left of requirements that no holding changes."""
+READ_CLOSER = "Read it closer or at more places: the swing itself, {read.swing}, is inside."
 
 
 def remedy_in_words(found: Review, finding: Finding) -> str:
@@ -51,6 +56,8 @@ def _last_resort(found: Review, finding: Finding) -> str:
     result = found.results.get(finding.key)
     if result is None:
         return finding.remedy
+    if any(path == PATH for share in result.combined.shares for path in share.cause.paths):
+        return _as_read(found, result)
     if found.loaded.job.done is not None:
         return ELSE_DONE
     instead = INSTEAD.get(result.stack.require.what)
@@ -58,6 +65,16 @@ def _last_resort(found: Review, finding: Finding) -> str:
         return instead
     ops = {share.cause.op for share in result.combined.shares} - {None}
     return finding.remedy if len(ops) > 1 else ELSE
+
+
+def _as_read(found: Review, result: Result) -> str:
+    """What is left of a backlash that was read on the finished wheel: no entry of the route moves it any more."""
+    scope = found.book.instances("mesh")[0]
+    swing, stack = found.book.get("read.swing", scope), result.stack
+    itself = swing.value if isinstance(swing, Known) and stack.require.what == "backlash-swing" else None
+    if isinstance(itself, float) and stack.high is not None and itself <= stack.high:
+        return filled(found, scope, READ_CLOSER)
+    return filled(found, scope, "{read.truing}") or "Read the backlash again at more places."
 
 
 def _worked_out(remedy: Remedy, *, inches: bool) -> str:
@@ -79,6 +96,9 @@ def _worked_out(remedy: Remedy, *, inches: bool) -> str:
     if remedy.again is not None:
         unit, digits = ("thou", 1) if inches else ("um", 0)
         more = show(abs(remedy.again.deeper), unit, digits)
+        if remedy.again.in_place:
+            way = "farther apart" if remedy.again.deeper > 0.0 else "closer together"
+            return f"Bring the axes {more} {way} (mesh.centre_distance), and read the backlash again ({remedy.again.path})."
         if remedy.again.deeper > 0.0:
             return f"Cut the gaps {more} deeper on the radius with the same insert, and measure again ({remedy.again.path})."
         return f"Gaps are not cut narrower: bring the axes {more} closer together (mesh.centre_distance), or cut another wheel."

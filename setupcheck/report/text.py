@@ -11,6 +11,7 @@ from setupcheck.quantities.book import Open, Scope
 from setupcheck.quantities.finished import finished
 from setupcheck.quantities.gates import Gate
 from setupcheck.quantities.judged import Result
+from setupcheck.report.backlash_read import backlash_read
 from setupcheck.report.causes import cause_in_words
 from setupcheck.report.contact import contacts
 from setupcheck.report.heating_plan import heating_plans
@@ -47,6 +48,7 @@ def as_text(found: Review, *, everything: bool = False) -> str:
         then_now(found, everything),
         still_to_move(found),
         prove_outs(found),
+        backlash_read(found),
         joints(found),
         heating_plans(found),
         contacts(found),

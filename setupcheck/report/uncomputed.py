@@ -35,6 +35,7 @@ NOT_LOOKED_AT: Mapping[str, Mapping[str, str]] = {
         "contact": "contact {said} (of a wheel cut by a single point only)",
         "error_budget": "error budget {said} (held against `contact: exact` only)",
         "mark": "mark of blue ({said})",
+        "backlash_read": "backlash as read (of a worm and its wheel only)",
         "eccentric": "throw of the eccentric {said} (told as still to move, with `done`)",
     },
     "Cutter": {
@@ -162,6 +163,9 @@ def _of_the_wheel(loaded: LoadedJob) -> Iterator[str]:
         return
     wheel = loaded.ref(job.mesh.wheel)
     asked = any(r.what == "backlash" for r in job.require)
+    yield "mesh.backlash_read"
+    if asked and job.mesh.backlash_read is not None:
+        yield from ("worm.material", "mesh.housing", "mesh.serves_at", f"parts.{wheel.part}.properties")
     for setup in job.setups:
         for name, cut in setup.cut.items():
             ref = loaded.ref(name, setup.part)

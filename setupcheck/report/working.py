@@ -50,6 +50,10 @@ COUNTED = {
     "hold.reach": "times the distance of the planes",
     "prove.count": "gaps",
     "prove.gap_out": "by the order of cutting",
+    "read.places": "places",
+    "read.usual_places": "places",
+    "read.tightest": "by the order of cutting",
+    "read.high_spot": "by the order of cutting",
     "progress.done": "is the last operation done",
     "hold.tilt_datums": "(1 wanted)",
 }

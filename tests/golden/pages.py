@@ -58,7 +58,7 @@ def reports() -> dict[str, str]:
 
 def drawings() -> dict[str, str]:
     """File name -> SVG of every golden drawing."""
-    return {"vary-range.svg": as_drawing(swept()), **route_pictures()}
+    return {"vary-range.svg": as_drawing(swept()), **route_pictures(), **pictures_of_heat_and_pitch()}
 
 
 def route_pictures() -> dict[str, str]:
@@ -66,7 +66,6 @@ def route_pictures() -> dict[str, str]:
     drawn = pictures(review(ROOT / "jobs" / "rotator-worm-wheel.yaml"))
     names = {"datums": "datums", "stack": "stack-1", "axial": "axial"}
     return {f"picture-{name}.svg": drawn[key].draw() for name, key in names.items()}
-    return {"vary-range.svg": as_drawing(swept()), **pictures_of_heat_and_pitch()}
 
 
 HIGH_AT = (

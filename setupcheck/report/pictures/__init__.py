@@ -32,13 +32,11 @@ def pictures(found: Review, read: ReadBack | None = None) -> dict[str, Picture]:
 
 
 def _all(found: Review, read: ReadBack | None) -> Iterator[Picture]:
-    from setupcheck.report.pictures import axial, datums, stacks
+    from setupcheck.report.pictures import axial, datums, heating, high_spots, pitch, stacks
 
     yield from datums.offered(found)
     yield from axial.offered(found)
-    yield from stacks.offered(found)
-    from setupcheck.report.pictures import heating, high_spots, pitch
-
-    yield from high_spots.offered(found)
     yield from heating.offered(found)
+    yield from high_spots.offered(found)
+    yield from stacks.offered(found)
     yield from pitch.offered(found, read)

@@ -97,6 +97,7 @@ def test_json_has_format_1_and_the_keys_that_were_promised(job: Path) -> None:
         "heating_plans",
         "contacts",
         "inserts",
+        "backlash_read",
         "worked_out",
         "findings",
         "cautions",

@@ -9,6 +9,7 @@ import pytest
 from pydantic import BaseModel
 
 from setupcheck.jobfile import (
+    backlash_read,
     dividing,
     grinding,
     heating,
@@ -72,6 +73,7 @@ READ = {
     "Touched": "surface measured uncertainty at_most tool",
     "Cut": "passes to state leave_on_diameter leave_on_radius leave error removes from_surface finishing_cut form cutter each "
     "spindle_to_axis tool_change_after prove_out",
+    "BacklashRead": "along readings uncertainty end_float",
     "ProveOut": "depth ball about readings uncertainty",
     "Heat": "hub shaft by oven_error read_by carry cold_by cold_error gauge flash_point room_volume coolant",
     "Join": "outer inner by square fit_error clearance rests stop mounted_at",
@@ -84,7 +86,19 @@ READ = {
 
 RECORDS = {
     record.__name__: record  # not the name it is found under: some have a second one
-    for module in (dividing, grinding, insert_profile, models, properties, prove_out, setups, heating, worm, marks)
+    for module in (
+        backlash_read,
+        dividing,
+        grinding,
+        insert_profile,
+        models,
+        properties,
+        prove_out,
+        setups,
+        heating,
+        worm,
+        marks,
+    )
     for record in vars(module).values()
     if inspect.isclass(record)
     and issubclass(record, BaseModel)
