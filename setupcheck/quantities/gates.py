@@ -5,6 +5,7 @@ from __future__ import annotations
 import math
 from collections.abc import Callable, Sequence
 from dataclasses import fields, replace
+from functools import partial
 
 from setupcheck.jobfile.models import Deviation
 from setupcheck.ledger.account import Account
@@ -16,6 +17,7 @@ from setupcheck.quantities.book import Scope
 from setupcheck.quantities.causes import kept_key
 from setupcheck.quantities.dial_entries import DialEntry, dial_entries
 from setupcheck.quantities.judged import Result
+from setupcheck.quantities.requirements import Stack
 from setupcheck.quantities.shop import Floor
 from setupcheck.record import record
 
@@ -106,9 +108,7 @@ def _excesses(places: Sequence[Reach], low: float | None, high: float | None) ->
     return found
 
 
-def room(
-    places: Sequence[Reach], *causes: Cause, low: float | None = None, high: float | None = None
-) -> float | None:
+def room(places: Sequence[Reach], *causes: Cause, low: float | None = None, high: float | None = None) -> float | None:
     """Factor by which causes without direction may grow (or must shrink) together until the worst case meets its limit.
 
     1 + margin / push, over the places the figure is the worst of; 0 where it cannot help.  None where the cause does not
@@ -167,9 +167,7 @@ def gates(scopes: Sequence[Scope], results: Sequence[tuple[str, Result]]) -> lis
             if same in shared:
                 assert entry.op is not None
                 first = found[shared[same]]
-                found[shared[same]] = replace(
-                    first, also=(*first.also, entry.op), paths=(*first.paths, entry.path)
-                )
+                found[shared[same]] = replace(first, also=(*first.also, entry.op), paths=(*first.paths, entry.path))
                 continue
             shared[same] = len(found)
         assert isinstance(scopes[0].node, Floor)
@@ -221,7 +219,9 @@ def _gate(floor: Floor, entry: DialEntry, kept: str, behind: Sequence[Behind]) -
             continue
         directed = directed or any(cause.mean for cause in causes)
         stack = one.result.stack
-        if any(cause.law == "blur" and not cause.mean for cause in causes):  # its direction went into a turn nobody knows
+        if any(
+            cause.law == "blur" and not cause.mean for cause in causes
+        ):  # its direction went into a turn nobody knows
             low, high = _walked_again(floor, entry, one)
         else:
             low, high = span_of(
@@ -254,55 +254,50 @@ def _walked_again(floor: Floor, entry: DialEntry, one: Behind) -> tuple[float, f
     """(least, largest) reading for one requirement by walking the route again with each reading tried."""
     from setupcheck.quantities.trial import figure_with
 
-    stack = one.result.stack
-
-    def excess(reading: float) -> float:
-        return worst_excess(figure_with(floor.loaded, stack, (entry.path,), measured=reading), stack.low, stack.high)
-
-    return _interval(excess, entry.planned)
+    return _interval(partial(_excess_again, figure_with, floor, one.result.stack, entry.path), entry.planned)
 
 
-def _as_they_run(
-    floor: Floor, entry: DialEntry, behind: Sequence[Behind], limits: Sequence[Limit]
-) -> list[Limit]:
-    """The limits with those of index figures that hear of the cutter's setting found on the route walked again.
+def _as_they_run(floor: Floor, entry: DialEntry, behind: Sequence[Behind], limits: Sequence[Limit]) -> list[Limit]:
+    """The limits with those of index figures that hear of the cutter's setting looked at on the route walked again.
 
-    What a setting adds grows faster than it does, so the figure as it stands is too kind to a reading above the plan. Only
-    those are walked again that may set the gate.
+    What a setting adds grows faster than it does, so the figure as it stands is too kind to a reading above the plan. One that
+    comes near the smallest limit is tried there, and worked out where it does not hold; the others stay as they are.
     """
     from setupcheck.quantities.trial import figure_with
 
+    running = {one.key: one.result.stack for one in behind if isinstance(one.result.figure, AsItRuns)}
     least = min((one.high for one in limits), default=math.inf)
-    running = {one.key: one for one in behind if isinstance(one.result.figure, AsItRuns)}
     found = []
     for limit in limits:
-        one = running.get(limit.by)
-        if one is not None and entry.planned < limit.high < NEAR * least and not kept_as(entry):
-            stack, by = one.result.stack, figure_with
-            excess = lambda reading: worst_excess(  # noqa: E731
-                by(floor.loaded, stack, (entry.path,), measured=reading), stack.low, stack.high
-            )
-            limit = replace(limit, high=falling_back(excess, entry.planned, limit.high))
+        stack = running.get(limit.by)
+        if stack is not None and entry.planned < limit.high < NEAR * least and not kept_as(entry):
+            excess = partial(_excess_again, figure_with, floor, stack, entry.path)
+            limit = replace(limit, high=falling_back(excess, entry.planned, least, limit.high))
         found.append(limit)
     return found
 
 
-def falling_back(excess: Callable[[float], float], inside: float, guess: float) -> float:
-    """Where a function that rises from `inside` on passes zero, from a guess that may lie beyond [mm]."""
-    if excess(guess) <= 0.0:
+def _excess_again(figure_with: Callable[..., Figure], floor: Floor, stack: Stack, path: str, reading: float) -> float:
+    return worst_excess(figure_with(floor.loaded, stack, (path,), measured=reading), stack.low, stack.high)
+
+
+def falling_back(excess: Callable[[float], float], inside: float, tried: float, guess: float) -> float:
+    """Where a function that rises from `inside` on passes zero; the guess, if it is still below at the place tried [mm]."""
+    at_high = excess(tried)
+    if at_high <= 0.0:
         return guess
-    low, high, at_low, at_high = inside, guess, excess(inside), excess(guess)
+    low, high, at_low = inside, tried, excess(inside)
     if at_low > 0.0:
         return 0.0
     for _ in range(CLOSER):
+        if high - low < EXACT:
+            break
         middle = low + (high - low) * min(max(at_low / (at_low - at_high), 0.05), 0.95)
         there = excess(middle)
         if there <= 0.0:
             low, at_low = middle, there
         else:
             high, at_high = middle, there
-        if high - low < EXACT:
-            break
     return low
 
 
