@@ -15,6 +15,7 @@ from setupcheck.ledger.route import Pattern
 from setupcheck.ledger.running import AsItRuns
 from setupcheck.quantities.book import Scope
 from setupcheck.quantities.causes import kept_key
+from setupcheck.quantities.convex import convex_span, falling_back
 from setupcheck.quantities.dial_entries import DialEntry, dial_entries
 from setupcheck.quantities.judged import Result
 from setupcheck.quantities.requirements import Stack
@@ -25,8 +26,6 @@ FINE, COARSE, FINE_BELOW = 0.0001, 0.001, 0.010
 """Gates are rounded down to 0.1 um below 10 um, to whole um above [mm]. Source: our screening choice."""
 NEAR = 1.5
 """How many times the smallest limit another one may be and still be looked at closely. Source: our screening choice."""
-CLOSER, EXACT = 40, 1e-9
-"""Most steps of a search, and where it is close enough [mm]. Source: our choice."""
 
 
 @record
@@ -281,26 +280,6 @@ def _excess_again(figure_with: Callable[..., Figure], floor: Floor, stack: Stack
     return worst_excess(figure_with(floor.loaded, stack, (path,), measured=reading), stack.low, stack.high)
 
 
-def falling_back(excess: Callable[[float], float], inside: float, tried: float, guess: float) -> float:
-    """Where a function that rises from `inside` on passes zero; the guess, if it is still below at the place tried [mm]."""
-    at_high = excess(tried)
-    if at_high <= 0.0:
-        return guess
-    low, high, at_low = inside, tried, excess(inside)
-    if at_low > 0.0:
-        return 0.0
-    for _ in range(CLOSER):
-        if high - low < EXACT:
-            break
-        middle = low + (high - low) * min(max(at_low / (at_low - at_high), 0.05), 0.95)
-        there = excess(middle)
-        if there <= 0.0:
-            low, at_low = middle, there
-        else:
-            high, at_high = middle, there
-    return low
-
-
 def origins(places: Sequence[Reach]) -> list[Cause]:
     """Every cause behind a figure, at any of the places it is the worst of, those within high points included."""
     found: dict[Cause, None] = {}
@@ -377,29 +356,13 @@ def _straight(
 def _interval(excess: Callable[[float], float], planned: float) -> tuple[float, float]:
     """Where a convex function of the reading is not above zero; (0, 0) where it is nowhere.
 
-    The worst case is convex in the length of one known vector (a norm of an affine function), so the best reading is found
-    by thirds and both ends by halving.  Source: textbook search, derived here.
+    The worst case is convex in the length of one known vector (a norm of an affine function).  Source: derived here.
     """
-    left, right = 0.0, 20.0 * planned + 1.0
-    a, b = left, right
-    for _ in range(80):
-        third = (b - a) / 3.0
-        if excess(a + third) <= excess(b - third):
-            b -= third
-        else:
-            a += third
-    best = (a + b) / 2.0
-    if excess(best) > 0.0:
+    most = 20.0 * planned + 1.0
+    low, high = convex_span(excess, planned, least=0.0, most=most)
+    if low > high:
         return 0.0, 0.0
-
-    def edge(inside: float, outside: float) -> float:
-        for _ in range(60):
-            half = (inside + outside) / 2.0
-            inside, outside = (half, outside) if excess(half) <= 0.0 else (inside, half)
-        return inside
-
-    low = 0.0 if excess(left) <= 0.0 else edge(best, left)
-    return low, math.inf if excess(right) <= 0.0 else edge(best, right)
+    return low, math.inf if high >= most else high
 
 
 def with_cause(figure: Figure, old: Cause, new: Cause) -> Figure:

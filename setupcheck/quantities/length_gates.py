@@ -6,6 +6,7 @@ import math
 import re
 from collections.abc import Callable, Iterator, Mapping, Sequence
 from dataclasses import replace
+from functools import partial
 
 from setupcheck.errors import JobError
 from setupcheck.jobfile.models import Deviation, Dimension
@@ -14,20 +15,20 @@ from setupcheck.jobfile.setups import Touched
 from setupcheck.ledger.causes import Cause
 from setupcheck.ledger.running import AsItRuns
 from setupcheck.quantities.book import OutOfRange
+from setupcheck.quantities.convex import convex_span
 from setupcheck.quantities.drive import middle
-from setupcheck.quantities.joint_shape import touched_diameter
 from setupcheck.quantities.entries import node_at
 from setupcheck.quantities.finished import op_of
 from setupcheck.quantities.gates import NEAR, Behind, Limit, stacks_behind, with_cause, worst_excess
+from setupcheck.quantities.joint_shape import touched_diameter
 from setupcheck.quantities.judged import Result
 from setupcheck.quantities.typical import typical_length
 from setupcheck.record import record
 
 FARTHEST = 50.0
 """A length may be out by so much and no requirement minds: it is not limited [mm]. Source: our screening choice."""
-CLOSE = 1e-10
-"""A search ends this far from the limit [base unit]. Source: our choice."""
 MOST_STEPS = 60
+"""Of a search by halves. Source: our choice."""
 
 _ERROR = re.compile(r"\.(error|depth_error)$")
 _SIZE = re.compile(r"\.spacers\[\d+\]\.length$|^parts\..*\.given\[\d+\]\.length$|^place\.worm_axis\.length$")
@@ -139,7 +140,7 @@ def _span(one: Behind, causes: Sequence[Cause], *, zero: float, u: float, now: f
             other = with_cause(other, cause, read)
         return worst_excess(other, stack.low, stack.high)
 
-    return convex_span(excess, zero if now is None else now)
+    return _about(excess, zero if now is None else now)
 
 
 def _as_it_runs(loaded: LoadedJob, path: str, one: Behind, limit: Limit, limits: Sequence[Limit], zero: float) -> Limit:
@@ -169,6 +170,12 @@ def _as_it_runs(loaded: LoadedJob, path: str, one: Behind, limit: Limit, limits:
     return replace(limit, low=held(limit.low, low), high=held(limit.high, high))
 
 
+def _about(excess: Callable[[float], float], start: float) -> tuple[float, float]:
+    """Where a convex function is not above zero, infinite where it never is so far out; (inf, -inf) where it is nowhere."""
+    low, high = convex_span(excess, start, least=start - FARTHEST, most=start + FARTHEST)
+    return (-math.inf if low <= start - FARTHEST else low), (math.inf if high >= start + FARTHEST else high)
+
+
 def _halved(excess: Callable[[float], float], inside: float, outside: float) -> float:
     for _ in range(MOST_STEPS):
         if abs(outside - inside) < 1e-6:
@@ -176,55 +183,6 @@ def _halved(excess: Callable[[float], float], inside: float, outside: float) -> 
         half = (inside + outside) / 2.0
         inside, outside = (half, outside) if excess(half) <= 0.0 else (inside, half)
     return inside
-
-
-def convex_span(excess: Callable[[float], float], start: float) -> tuple[float, float]:
-    """Where a convex function is not above zero: from the start outward, each end by tangents and halving.
-
-    (inf, -inf) where it is nowhere.  Source: Newton's method from outside never passes the end of a convex function.
-
-    >>> low, high = convex_span(lambda x: abs(x - 1.0) - 0.25, 0.0)
-    >>> round(low, 9), round(high, 9)
-    (0.75, 1.25)
-    """
-    inside = start if excess(start) <= 0.0 else _lowest(excess, start)
-    if excess(inside) > 0.0:
-        return math.inf, -math.inf
-    return _end(excess, inside, -1.0), _end(excess, inside, 1.0)
-
-
-def _lowest(excess: Callable[[float], float], start: float) -> float:
-    """Where a convex function is least, within FARTHEST of the start. Source: golden section, a textbook search."""
-    golden = (math.sqrt(5.0) - 1.0) / 2.0
-    a, b = start - FARTHEST, start + FARTHEST
-    for _ in range(MOST_STEPS):
-        c, d = b - golden * (b - a), a + golden * (b - a)
-        a, b = (a, d) if excess(c) <= excess(d) else (c, b)
-    return (a + b) / 2.0
-
-
-def _end(excess: Callable[[float], float], inside: float, way: float) -> float:
-    at, value = inside + way * FARTHEST, 0.0
-    value = excess(at)
-    if value <= 0.0:
-        return way * math.inf
-    least = inside
-    for _ in range(MOST_STEPS):
-        step = max(abs(at - least) * 1e-3, 1e-9)
-        slope = (value - excess(at - way * step)) / step
-        closer = at - way * value / slope if slope > 0.0 else least
-        if (closer - least) * way <= 0.0:  # the tangent's own step passed a bend
-            closer = (at + least) / 2.0
-        there = excess(closer)
-        if there <= CLOSE:
-            if there > -CLOSE:
-                return closer
-            least = closer
-        else:
-            at, value = closer, there
-        if abs(at - least) < CLOSE:
-            break
-    return least
 
 
 def touched_gates(loaded: LoadedJob, results: Mapping[str, Result], floor: object) -> Iterator[LengthGate]:
@@ -260,7 +218,7 @@ def touched_gates(loaded: LoadedJob, results: Mapping[str, Result], floor: objec
                 here = excess(now, result)
                 if here > 0.0 or abs(excess(now + 0.01, result) - here) < 1e-9 > abs(excess(now - 0.01, result) - here):
                     continue
-                ends = [_walked_out(lambda v, r=result: excess(v, r), now, way) for way in (-1.0, 1.0)]
+                ends = [_walked_out(partial(excess, result=result), now, way) for way in (-1.0, 1.0)]
                 limits.append(Limit(key, ends[0], ends[1]))
             limits = [one for one in limits if one.high - one.low < math.inf or abs(one.low) < math.inf]
             if limits:

@@ -8,6 +8,7 @@ from dataclasses import replace
 from pydantic import BaseModel
 
 from setupcheck.jobfile.reading import LoadedJob, Loc
+from setupcheck.jobfile.setups import Job
 from setupcheck.ledger.figures import Figure
 from setupcheck.quantities.book import Open
 from setupcheck.quantities.requirements import Stack
@@ -21,7 +22,7 @@ def with_entry(loaded: LoadedJob, paths: Sequence[str], **keys: object) -> Loade
     job: object = loaded.job
     for path in paths:
         job = _put(job, loaded.loc(path), keys)
-    assert isinstance(job, BaseModel)
+    assert isinstance(job, Job)
     return replace(loaded, job=job)
 
 
