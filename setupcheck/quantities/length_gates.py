@@ -9,9 +9,9 @@ from dataclasses import replace
 from functools import partial
 
 from setupcheck.errors import JobError
-from setupcheck.jobfile.models import Deviation, Dimension
+from setupcheck.jobfile.models import Deviation, Dimension, Distance, Relation
 from setupcheck.jobfile.reading import LoadedJob
-from setupcheck.jobfile.setups import Touched
+from setupcheck.jobfile.setups import Clock, Cut, MidPlane, Spacer, Stop, Touched
 from setupcheck.ledger.causes import Cause
 from setupcheck.ledger.running import AsItRuns
 from setupcheck.quantities.book import OutOfRange
@@ -27,6 +27,8 @@ from setupcheck.record import record
 
 FARTHEST = 50.0
 """A length may be out by so much and no requirement minds: it is not limited [mm]. Source: our screening choice."""
+STRIDES = (0.02, 0.08, 0.32)
+"""How far from the drawing a touched diameter is tried, either way [mm]. Source: our screening choice."""
 MOST_STEPS = 60
 """Of a search by halves. Source: our choice."""
 
@@ -44,6 +46,7 @@ class LengthGate:
     low, high   of the range [mm], infinite where nothing limits it;  both NaN where no value will do
     planned     bound of an error, or middle of a size, as planned [mm];  measured  as measured, None where it is not
     by_low, by_high  instance of the stack that sets each end
+    bound       what the plan allows either way [mm];  words  what it is, as a machinist says it
     limits      what each requirement allows by itself;  indicator  one division of what reads it [mm], 0 where none is named
     """
 
@@ -56,12 +59,19 @@ class LengthGate:
     measured: float | None
     by_low: str
     by_high: str
+    bound: float
+    words: str
     limits: tuple[Limit, ...]
     indicator: float = 0.0
 
     @property
     def key(self) -> str:
         return f"{self.path}.measured"
+
+    @property
+    def about(self) -> float:
+        """What the range lies about: the planned size, or no error."""
+        return self.planned if self.is_size else 0.0
 
     @property
     def lost(self) -> bool:
@@ -87,7 +97,7 @@ def _gate(loaded: LoadedJob, path: str, behind: Sequence[Behind]) -> LengthGate 
         planned, zero, u = node.at_most if node.at_most is not None else row.value if row else 0.0, 0.0, node.u
     elif isinstance(node, Dimension) and not (".hold." in path and node.nominal is None):
         planned, zero = (
-            middle(replace_measured(node)),
+            middle(_as_planned(node)),
             middle(node),
         )  # at a stop only what is off its nominal size counts
         u = (node.uncertainty or 0.0) / 2.0 if node.measured is not None else 0.0
@@ -103,15 +113,17 @@ def _gate(loaded: LoadedJob, path: str, behind: Sequence[Behind]) -> LengthGate 
         return None
     running = {one.key: one for one in behind if isinstance(one.result.figure, AsItRuns)}
     limits = [_as_it_runs(loaded, path, running[x.by], x, limits, zero) if x.by in running else x for x in limits]
-    return _together(path, limits, node, planned)
+    return _together(loaded, path, limits, node, planned)
 
 
-def replace_measured(node: Dimension) -> Dimension:
+def _as_planned(node: Dimension) -> Dimension:
     """The size as it was planned: without its measured value, where it has a nominal one."""
     return node.model_copy(update={"measured": None, "uncertainty": None}) if node.nominal is not None else node
 
 
-def _together(path: str, limits: Sequence[Limit], node: Deviation | Dimension | Touched, planned: float) -> LengthGate:
+def _together(
+    loaded: LoadedJob, path: str, limits: Sequence[Limit], node: Deviation | Dimension | Touched, planned: float
+) -> LengthGate:
     low, high = max(limits, key=lambda one: one.low), min(limits, key=lambda one: one.high)
     lost = low.low > high.high or any(one.low > one.high for one in limits)
     return LengthGate(
@@ -124,9 +136,42 @@ def _together(path: str, limits: Sequence[Limit], node: Deviation | Dimension | 
         node.measured,
         next(one.by for one in limits if one.low > one.high) if lost and low.low <= high.high else low.by,
         high.by,
+        _bound(node, planned),
+        _words(loaded, path),
         tuple(sorted(limits, key=lambda one: one.high - one.low)),
         indicator=getattr(node, "indicator", None) or 0.0,
     )
+
+
+def _bound(node: Deviation | Dimension | Touched, planned: float) -> float:
+    """What the plan allows either way [mm]; 0 where it says nothing of that."""
+    if isinstance(node, Deviation):
+        return planned
+    if isinstance(node, Touched):
+        return (node.at_most or node.uncertainty or 0.0) / 2.0
+    return ((node.upper or 0.0) - (node.lower or 0.0)) / 2.0 or node.uncertainty or 0.0
+
+
+def _words(loaded: LoadedJob, path: str) -> str:
+    """`op 40, stop on seat`, `op 70, shim`, `worm axis from spindle.shoulder`."""
+    op, parent = op_of(path), node_at(loaded, path.rpartition(".")[0])
+    where = f"op {op}, " if op is not None else ""
+    name = path.split(".")[3] if ".cut." in path else ""
+    if isinstance(parent, Spacer):
+        return f"{where}{parent.name}{' at the stop' if '.hold.' in path else ''}"
+    if isinstance(parent, Stop):
+        return f"{where}{'seating of' if '.join.' in path else 'stop on'} {parent.on.rpartition('.')[2]}"
+    if isinstance(parent, Clock):
+        return f"{where}clocking on {parent.on}"
+    if isinstance(parent, Relation):
+        return f"{path.split('.')[1]}.{parent.of.rpartition('.')[2]} from {parent.from_} as bought"
+    if isinstance(parent, Distance):
+        return f"worm axis from {parent.from_}"
+    if isinstance(parent, MidPlane):
+        return f"{where}mid-plane found"
+    if path.endswith(".depth_from") and isinstance(parent, Cut) and parent.depth_from is not None:
+        return f"{where}{parent.depth_from.surface} as touched"
+    return f"{where}{'depth' if path.endswith('.depth_error') else 'length'} of {name}"
 
 
 def _span(one: Behind, causes: Sequence[Cause], *, zero: float, u: float, now: float | None) -> tuple[float, float]:
@@ -222,15 +267,14 @@ def touched_gates(loaded: LoadedJob, results: Mapping[str, Result], floor: objec
                 limits.append(Limit(key, ends[0], ends[1]))
             limits = [one for one in limits if one.high - one.low < math.inf or abs(one.low) < math.inf]
             if limits:
-                yield _together(path, limits, cut.depth_from, now)
+                yield _together(loaded, path, limits, cut.depth_from, now)
 
 
 def _walked_out(excess: Callable[[float], float], inside: float, way: float) -> float:
-    """The first place outward where a requirement is no longer met, steps doubled from a hundredth, then halved [mm]."""
-    step = 0.01
+    """The first place outward where a requirement is no longer met, in STRIDES, then halved [mm]."""
     good = inside
-    while step < 1.0:
+    for step in STRIDES:
         if excess(inside + way * step) > 0.0:
             return _halved(excess, good, inside + way * step)
-        good, step = inside + way * step, step * 2.0
+        good = inside + way * step
     return way * math.inf
