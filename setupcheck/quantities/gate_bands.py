@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import cmath
 import math
 from collections.abc import Callable, Iterator, Mapping, Sequence
 from dataclasses import replace
@@ -22,8 +23,8 @@ WITHIN = (20.0, 45.0, 80.0)
 """Widths that are looked at, either way of the best direction [deg]. Source: our screening choice."""
 APART = 5.0
 """Directions that are tried stand so far apart [deg]. Source: our choice."""
-COARSE = 20.0
-"""The same in the first round, which finds the best one [deg]. Source: our choice."""
+SAME = 1.0 - 1e-4
+"""Readings that differ by less are the same. Source: our choice."""
 LARGEST = 4.0
 """Readings up to so many times the larger of gate and plan are looked at. Source: our screening choice."""
 STEPS, ENOUGH = 30, 1e-7
@@ -70,10 +71,27 @@ def bands(floor: Floor, results: Mapping[str, Result], gate: Gate) -> tuple[Band
             least = min(least, _largest(one, angle, least))
         return least
 
-    start = max(range(0, 360, int(COARSE)), key=lambda degrees: reading_at(math.radians(degrees)))
-    best: float = max((start + off for off in _offsets(COARSE)), key=lambda degrees: reading_at(math.radians(degrees)))
-    name, best = _named(floor, path, best)
-    return tuple(_widening(gate, name, lambda off: reading_at(math.radians(best + off))))
+    round_it = {degrees: reading_at(math.radians(degrees)) for degrees in _circle()}
+    name, best = _named(floor, path, _middle_of_best(round_it))
+
+    def reading_off(off: float) -> float:
+        known = round_it.get((best + off) % 360.0)
+        return known if known is not None else reading_at(math.radians(best + off))
+
+    return tuple(_widening(gate, name, reading_off))
+
+
+def _circle() -> list[float]:
+    return [APART * n for n in range(round(360.0 / APART))]
+
+
+def _middle_of_best(round_it: Mapping[float, float]) -> float:
+    """The direction that allows most; the middle of all that allow the same, on a direction tried [deg]."""
+    most = max(round_it.values()) * SAME
+    towards = sum(cmath.exp(1j * math.radians(at)) for at, reading in round_it.items() if reading >= most)
+    if abs(towards) < 1e-6:
+        return max(round_it, key=lambda at: round_it[at])
+    return round(math.degrees(cmath.phase(towards)) / APART) * APART % 360.0
 
 
 def _widening(gate: Gate, name: str, reading_off: Callable[[float], float]) -> Iterator[Band]:

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import math
+import re
 from functools import cache
 from pathlib import Path
 
@@ -10,7 +11,8 @@ import pytest
 
 from setupcheck.flow import Review, review
 from setupcheck.jobfile.changing import Change, changed
-from setupcheck.report.gates import ends_of, lengths_of
+from setupcheck.report.gates import bands_of, ends_of, lengths_of
+from setupcheck.report.text import as_text
 from setupcheck.report.wording import on_the_dial
 from setupcheck.shipped import shipped
 
@@ -79,3 +81,110 @@ def test_the_length_printed_passes_and_a_little_beyond_the_exact_one_does_not(jo
     over = with_typed(job, (gate.key,), f"{beyond * 1000.0:.9f} um")
     assert margins(before)[by] >= 0.0 > margins(over)[by]
     assert by in not_passed(over)
+
+
+WHEEL = shipped("jobs/rotator-worm-wheel.yaml")
+HUB = "setups.50.hold.centre.runout"
+
+
+def after(*changes: tuple[str, str], job: Path = WHEEL) -> Review:
+    return review(changed(judged(job).loaded, [Change(key, value) for key, value in changes]))
+
+
+def reading(found: Review, key: str) -> float:
+    gate = next(g for g in found.gates if g.key == key)
+    assert gate.reading is not None
+    return gate.reading
+
+
+def test_a_hold_that_came_out_better_leaves_more_to_the_others() -> None:
+    before, better = judged(WHEEL), after((f"{HUB}.measured", "2 um"))
+    for key in ("40/centre", "40/square", "50/square"):
+        assert reading(better, key) > reading(before, key) + 1e-4
+    assert reading(better, "50/centre") == pytest.approx(reading(before, "50/centre"))  # its own does not hear of it
+    worse = after((f"{HUB}.measured", "5 um"))
+    assert reading(worse, "40/centre") < reading(before, "40/centre") - 1e-4
+    stop = "setups.50.hold.stop.error.measured"
+    wide, free = (
+        next(g for g in lengths_of(x, everything=False) if g.path == "setups.40.hold.stop.error")
+        for x in (before, after((stop, "0 um")))
+    )
+    assert free.low < wide.low - 1e-3
+    assert free.high > wide.high + 1e-3
+
+
+KNOWN = ((f"{HUB}.high_at", "tooth 14"),)
+
+
+def directions(high_at: str, off: float) -> str:
+    """So many degrees beside a direction, as `high_at` takes it."""
+    word, _, number = high_at.partition(" ")
+    if word == "tooth":
+        return f"tooth {(int(number) - 1 + round(off / 5.0)) % 72 + 1}"  # 72 teeth: five degrees each
+    return f"{(float(word) + off) % 360.0:g} deg"
+
+
+@pytest.mark.parametrize("key", ["40/centre", "40/square", "50/square"])
+def test_a_band_holds_as_wide_as_it_says_and_not_on_the_other_side(key: str) -> None:
+    found = after(*KNOWN)
+    gate = next(g for g in found.gates if g.key == key)
+    bands = bands_of(found, gate)
+    assert bands
+    assert [b.within for b in bands] == sorted((b.within for b in bands), reverse=True)
+    assert gate.reading is not None
+    assert gate.reading < bands[0].reading <= bands[-1].reading
+
+    def missed(at: float, size: float) -> set[str]:
+        entry = f"{{measured: {size * 1000.0:.6f} um, high_at: {directions(bands[0].high_at, at)}}}"
+        return inside(found) - inside(after(*KNOWN, (gate.paths[0], entry)))
+
+    for band in bands:
+        offs = (-band.within, -band.within / 4.0, 0.0, band.within / 4.0, band.within)
+        assert not any(missed(5.0 * round(off / 5.0), band.reading) for off in offs), band
+        assert any(missed(5.0 * round(off / 5.0), band.reading * 1.03) for off in offs), band
+        assert missed(180.0, band.reading)
+
+
+def test_there_is_no_band_where_nothing_else_has_a_direction() -> None:
+    for job in JOBS:
+        assert not any(bands_of(judged(job), gate) for gate in judged(job).gates)
+
+
+def test_the_review_says_where_a_high_spot_may_lie() -> None:
+    told = " ".join(as_text(after(*KNOWN)).split())
+    assert (
+        "op 50, face run-out on seat: up to 13 um (4 um planned), set by backlash-swing at teeth about bearings; up to "
+        in told
+    )
+    assert re.search(
+        r"op 40, run-out on hub: up to 4\.9 um \(3 um planned\), .*?; up to [\d.]+ um if it is high within "
+        r"\d+ deg of \d+ deg, up to [\d.]+ um within \d+ deg",
+        told,
+    )
+
+
+def test_a_known_direction_that_a_turn_takes_away_is_worked_out_on_the_route() -> None:
+    """Where the throat was touched nobody knows, so the backlash hears of the hub's run-out as a ring, direction or not."""
+    directed = after(("setups.40.hold.centre.runout", "{measured: 3 um, uncertainty: 1 um, high_at: 40 deg}"), *KNOWN)
+    gate = next(g for g in directed.gates if g.key == "40/centre")
+    backlash = next(one for one in gate.limits if one.by.startswith("backlash."))
+    for size, good in ((backlash.high * 0.9999, True), (backlash.high * 1.001, False)):
+        entry = f"{{measured: {size * 1000.0:.6f} um, uncertainty: 1 um, high_at: 40 deg}}"
+        again = margins(after(("setups.40.hold.centre.runout", entry), *KNOWN))
+        assert (again[backlash.by] >= 0.0) is good
+
+
+def test_a_device_that_only_names_its_typical_reading_has_a_gate_too() -> None:
+    found = after((HUB, "{device: four-jaw}"))
+    gate = next(g for g in found.gates if g.key == "50/centre")
+    assert (0.010, False) == (gate.planned, gate.measured)
+    assert gate.reading == pytest.approx(reading(judged(WHEEL), "50/centre") + 1.5e-3)  # without the guard of a reading
+
+
+def test_a_touched_diameter_keeps_its_requirements_within_its_range() -> None:
+    gates = [g for g in lengths_of(judged(WHEEL), everything=True) if g.path.endswith(".depth_from")]
+    for gate in gates:
+        for end in (gate.low, gate.high):
+            if math.isfinite(end):
+                kept = with_typed(WHEEL, (gate.key,), f"{end:.6f} mm")
+                assert inside(judged(WHEEL)) <= inside(kept)
