@@ -4,17 +4,17 @@ from __future__ import annotations
 
 import cmath
 import math
-from collections.abc import Callable, Iterator, Mapping, Sequence
+from collections.abc import Callable, Iterator, Mapping
 from dataclasses import replace
 
 from setupcheck.errors import JobError
-from setupcheck.jobfile.models import Deviation
 from setupcheck.jobfile.reading import LoadedJob
-from setupcheck.ledger.causes import TRUNCATION, TRUNCATION_2D, Cause
 from setupcheck.ledger.figures import Figure
+from setupcheck.ledger.running import AsItRuns
 from setupcheck.quantities.entries import deviation
-from setupcheck.quantities.gates import Behind, Gate, origins, reaches, stacks_behind, with_cause, worst_excess
+from setupcheck.quantities.gates import Behind, Gate, origins, stacks_behind, worst_excess
 from setupcheck.quantities.judged import Result
+from setupcheck.quantities.mixing import CORNERS, mixer
 from setupcheck.quantities.shop import Floor
 from setupcheck.quantities.trial import figure_on, floor_with
 from setupcheck.record import record
@@ -23,8 +23,12 @@ WITHIN = (20.0, 45.0, 80.0)
 """Widths that are looked at, either way of the best direction [deg]. Source: our screening choice."""
 APART = 5.0
 """Directions that are tried stand so far apart [deg]. Source: our choice."""
+COARSE = 15.0
+"""The same in the first round, which finds the best one [deg]. Source: our choice."""
 SAME = 1.0 - 1e-4
 """Readings that differ by less are the same. Source: our choice."""
+TRIAL = 0.01
+"""The reading that the route is walked with [mm]. Source: our choice; everything known goes straight through it."""
 LARGEST = 4.0
 """Readings up to so many times the larger of gate and plan are looked at. Source: our screening choice."""
 STEPS, ENOUGH = 30, 1e-7
@@ -49,9 +53,9 @@ class Band:
 def bands(floor: Floor, results: Mapping[str, Result], gate: Gate) -> tuple[Band, ...]:
     """The widest first, each allowing more than the one before; none where nothing else has a known direction.
 
-    The route is walked with the reading high at 0 and at 90 degrees, which gives what any direction does to every figure;
-    between two directions tried, the smaller reading times the cosine of half their distance holds, as what passes is
-    convex.  Source: convexity of a norm; derived here.
+    The route is walked with the reading high at three directions, which gives what any other does to every figure. Between
+    two directions tried, the smaller reading times the cosine of half their distance holds, as what passes is convex.
+    Source: convexity of a norm; derived here.
     """
     if len(gate.paths) != 1 or gate.step not in ("centre", "and_centre", "square") or not gate.reading:
         return ()
@@ -59,11 +63,13 @@ def bands(floor: Floor, results: Mapping[str, Result], gate: Gate) -> tuple[Band
     behind = [one for one in stacks_behind(list(results.items())) if one.causes(path)]
     if not any(_known_beside(one, path) for one in behind):
         return ()
-    tried = _tried(floor, path, behind)
+    most = LARGEST * max(gate.reading, gate.planned)
+    given = deviation(floor.loaded, path)
+    most_anywhere = math.inf if gate.high_at else most + (given.u if given is not None else 0.0)
+    tight = [one.by for one in gate.limits if one.high < most_anywhere]  # the others hold wherever the high spot lies
+    tried = _tried(floor, path, sorted((o for o in behind if o.key in tight), key=lambda o: tight.index(o.key)))
     if tried is None:
         return ()
-    given = deviation(floor.loaded, path)
-    most = min(LARGEST * max(gate.reading, gate.planned), _anywhere(gate, given, tried))
 
     def reading_at(angle: float) -> float:
         least = most
@@ -82,7 +88,7 @@ def bands(floor: Floor, results: Mapping[str, Result], gate: Gate) -> tuple[Band
 
 
 def _circle() -> list[float]:
-    return [APART * n for n in range(round(360.0 / APART))]
+    return [COARSE * n for n in range(round(360.0 / COARSE))]
 
 
 def _middle_of_best(round_it: Mapping[float, float]) -> float:
@@ -114,19 +120,16 @@ def _offsets(within: float) -> list[float]:
 
 @record(eq=False)
 class _Tried:
-    """One figure with the reading in it as a cause of a known direction; its mean for 1 mm high at 0 and at 90 degrees."""
+    """A figure with any reading typed in, x and y times TRIAL high at 0 and at 90 degrees, and its limits."""
 
-    key: str
-    figure: Figure
-    cause: Cause
-    at_zero: complex
-    at_right_angle: complex
+    figure: Callable[[float, float], Figure]
     low: float | None
     high: float | None
 
     def excess(self, reading: float, angle: float) -> float:
-        mean = reading * (self.at_zero * math.cos(angle) + self.at_right_angle * math.sin(angle))
-        return worst_excess(with_cause(self.figure, self.cause, replace(self.cause, mean=mean)), self.low, self.high)
+        size = reading / TRIAL
+        there = self.figure(size * math.cos(angle), size * math.sin(angle))
+        return worst_excess(there, self.low, self.high)
 
 
 def _known_beside(one: Behind, path: str) -> bool:
@@ -137,35 +140,22 @@ def _known_beside(one: Behind, path: str) -> bool:
 def _tried(floor: Floor, path: str, behind: list[Behind]) -> list[_Tried] | None:
     """The figures with the reading typed in; None where the route does not take a direction there."""
     try:
-        floors = [floor_with(floor.loaded, (path,), measured=1.0, high_at=words) for words in ("0 deg", "90 deg")]
-        found = []
-        for one in behind:
-            figures = [figure_on(each, one.result.stack) for each in floors]
-            causes = [_of(path, figure) for figure in figures]
-            if causes[0] is None or causes[1] is None:
-                continue
-            stack = one.result.stack
-            found.append(_Tried(one.key, figures[0], causes[0], causes[0].mean, causes[1].mean, stack.low, stack.high))
+        floors = [floor_with(floor.loaded, (path,), measured=TRIAL, high_at=words) for words in CORNERS]
+        return [_of(one, floors) for one in behind]
     except (JobError, ValueError):
         return None
-    return found
 
 
-def _of(path: str, figure: Figure) -> Cause | None:
-    """The one cause of the entry; None where a turn that nobody recorded has taken its direction, or a share of it."""
-    mine = [cause for cause in origins(reaches(figure)) if path in cause.paths]
-    return mine[0] if len(mine) == 1 and mine[0].mean else None
+def _of(one: Behind, floors: list[Floor]) -> _Tried:
+    """One requirement on these routes; what a setting adds to an index figure is taken as it stands.
 
-
-def _anywhere(gate: Gate, given: Deviation | None, tried: Sequence[_Tried]) -> float:
-    """Largest reading that the requirements which see no direction allow, wherever the high spot lies [mm].
-
-    A reading with a direction keeps more of its uncertainty than one without.  Source: ledger.causes.
+    Raises: JobError, ValueError where it has no figure there.
     """
-    seen = {one.key for one in tried}
-    high = min((one.high for one in gate.limits if one.by not in seen), default=math.inf)
-    u = given.u if given is not None and given.measured is not None and given.high_at is None else 0.0
-    return max(high - (TRUNCATION_2D - TRUNCATION) * u, 0.0)
+    stack, now = one.result.stack, one.result.figure
+    figures = [figure_on(each, stack) for each in floors]
+    if isinstance(now, AsItRuns):
+        figures = [replace(each, rises=now.rises) if isinstance(each, AsItRuns) else each for each in figures]
+    return _Tried(mixer(figures), stack.low, stack.high)
 
 
 def _largest(one: _Tried, angle: float, most: float) -> float:
