@@ -11,6 +11,7 @@ import pytest
 
 from setupcheck.flow import Review, review
 from setupcheck.jobfile.changing import Change, changed
+from setupcheck.jobfile.reading import read_job_text
 from setupcheck.report.gates import bands_of, ends_of, lengths_of
 from setupcheck.report.text import as_text
 from setupcheck.report.wording import on_the_dial
@@ -188,3 +189,53 @@ def test_a_touched_diameter_keeps_its_requirements_within_its_range() -> None:
             if math.isfinite(end):
                 kept = with_typed(WHEEL, (gate.key,), f"{end:.6f} mm")
                 assert inside(judged(WHEEL)) <= inside(kept)
+
+
+BUSH = """
+setupcheck: 1
+title: A bush turned in two holdings, invented
+units: mm
+parts:
+  bush: {surfaces: {bar: {kind: cylinder, diameter: 60, from: -30, to: 40, made: stock}, out: {kind: cylinder, diameter: 50, from: 0, to: 20},
+                    end: {kind: face, at: 20, facing: +z, diameter: 50}, bore: {kind: bore, diameter: 20, from: 0, to: 20}, rim: {kind: cylinder, diameter: 40, from: 20, to: 30}}}
+machines: {lathe-A: {kind: lathe, axis_runout: 0 um}}
+setups:
+  - {op: 10, machine: lathe-A, looks_at_tool: +z, hold: {centre: {on: bar, by: three-jaw, at: -20, runout: 0.1 mm}, and_centre: {on: bar, at: 5,
+     runout: 0.1 mm}}, cut: {out: {}, end: {}}}
+  - {op: 20, machine: lathe-A, looks_at_tool: +z, hold: {centre: {on: out, by: four-jaw, runout: 4 um}, square: {on: end,
+     face_runout: 0 um, across: 40}}, cut: {rim: {}}}
+  - {op: 30, machine: lathe-A, looks_at_tool: +z, hold: {centre: {on: rim, by: four-jaw, runout: 3 um}, square: {on: end,
+     face_runout: 0 um, across: 40}}, cut: {bore: {}}}
+require: [{what: run-out, of: bush.bore, about: bush.out, at_most: 8 um}]
+"""
+
+
+def bush(*changes: tuple[str, str]) -> Review:
+    return review(changed(read_job_text(BUSH, "bush.yaml"), [Change(key, value) for key, value in changes]))
+
+
+def test_two_readings_that_add_up_share_their_limit() -> None:
+    """By hand: 8 um less the other reading."""
+    assert reading(bush(), "20/centre") == pytest.approx(0.005)
+    assert reading(bush(), "30/centre") == pytest.approx(0.004)
+
+
+def test_the_band_of_a_reading_beside_a_known_one_is_that_of_two_vectors() -> None:
+    """By hand: 4 um high at 0 deg and r high at phi are together |4 + r exp(i phi)| <= 8, so that at phi = 180 - w
+    r = 4 cos w + sqrt(64 - 16 sin(w)^2); 5 deg between the directions tried take cos 2.5 deg from it.
+    """
+    found = bush(("setups.20.hold.centre.runout", "{measured: 4 um, uncertainty: 0 um, high_at: 0 deg}"))
+    gate = next(g for g in found.gates if g.key == "30/centre")
+    assert gate.reading == pytest.approx(0.004)
+    told = {b.within: b.reading for b in bands_of(found, gate)}
+    assert list(told) == [80.0, 45.0, 20.0]
+    for within, size in told.items():
+        w = math.radians(within)
+        by_hand = 4.0 * math.cos(w) + math.sqrt(64.0 - 16.0 * math.sin(w) ** 2)
+        assert size * 1000.0 == pytest.approx(by_hand * math.cos(math.radians(2.5)), rel=1e-5)
+    assert {b.high_at for b in bands_of(found, gate)} == {"180 deg"}
+    told_in_words = " ".join(as_text(found).split())
+    assert (
+        "up to 4.0 um (3 um planned), set by run-out at bore about out; up to 7.6 um if it is high within 80 deg of 180 deg, up to 10 um within 45 deg, up to 11 um within 20 deg"
+        in told_in_words
+    )
