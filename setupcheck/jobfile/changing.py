@@ -11,7 +11,7 @@ from pydantic import BaseModel
 from setupcheck.errors import JobError, Problem, SetupcheckError, printable
 from setupcheck.jobfile.models import Deviation, Dimension
 from setupcheck.jobfile.reading import LoadedJob, Loc, read_tree
-from setupcheck.jobfile.setups import Touched
+from setupcheck.jobfile.setups import Through, Touched
 from setupcheck.notation import nearest, quoted
 from setupcheck.record import record
 from setupcheck.yamlfile import Data, Node, Place, Tree, parse
@@ -195,6 +195,8 @@ def _as_map(record: object) -> dict[str, Data]:
         sizes = {"nominal": record.nominal, "lower": record.lower, "upper": record.upper}
         shown: dict[str, Data] = {key: _mm(size) for key, size in sizes.items() if size is not None}
         return {**shown, "fit": record.fit} if record.fit else shown
+    if isinstance(record, Through):
+        return {"by": record.by, "runout": {"device": record.by}}
     return {"surface": record.surface} if isinstance(record, Touched) else {}
 
 

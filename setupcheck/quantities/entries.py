@@ -23,7 +23,7 @@ class Stated:
     least: float = 0.0
 
 
-def _node(loaded: LoadedJob, path: str) -> object:
+def node_at(loaded: LoadedJob, path: str) -> object:
     """What stands at a path of the typed job."""
     node: object = loaded.job
     for step in loaded.loc(path):
@@ -37,7 +37,7 @@ def _node(loaded: LoadedJob, path: str) -> object:
 
 
 def deviation(loaded: LoadedJob, path: str) -> Deviation | None:
-    node = _node(loaded, path)
+    node = node_at(loaded, path)
     return node if isinstance(node, Deviation) else None
 
 
@@ -51,7 +51,7 @@ def stated(loaded: LoadedJob, path: str, cause: Cause | None = None) -> Stated |
     row = row_of(cause) if cause is not None else None
     if row is not None and ".divide." not in path:  # those of a division come together, as `_recorded` has them
         return Stated(row.value, "um")
-    node = _node(loaded, path)
+    node = node_at(loaded, path)
     if isinstance(node, Deviation):
         value = node.measured if node.measured is not None else node.at_most
         if value is None:

@@ -5,6 +5,7 @@ from __future__ import annotations
 import math
 from collections.abc import Callable, Sequence
 from dataclasses import fields, replace
+from functools import partial
 
 from setupcheck.jobfile.models import Deviation
 from setupcheck.ledger.account import Account
@@ -14,28 +15,50 @@ from setupcheck.ledger.route import Pattern
 from setupcheck.ledger.running import AsItRuns
 from setupcheck.quantities.book import Scope
 from setupcheck.quantities.causes import kept_key
+from setupcheck.quantities.convex import convex_span, falling_back
+from setupcheck.quantities.dial_entries import DialEntry, dial_entries
 from setupcheck.quantities.judged import Result
-from setupcheck.quantities.scopes import HoldEntry
+from setupcheck.quantities.requirements import Stack
+from setupcheck.quantities.shop import Floor
 from setupcheck.record import record
 
 FINE, COARSE, FINE_BELOW = 0.0001, 0.001, 0.010
 """Gates are rounded down to 0.1 um below 10 um, to whole um above [mm]. Source: our screening choice."""
+NEAR = 1.5
+"""How many times the smallest limit another one may be and still be looked at closely. Source: our screening choice."""
+
+
+@record
+class Limit:
+    """What one requirement alone asks of one entry: between `low` and `high` [mm]; infinite where it sets no such end.
+
+    by  instance of the stack;  both ends 0 where no value of this entry alone brings it inside
+    """
+
+    by: str
+    low: float
+    high: float
 
 
 @record
 class Gate:
-    """The largest dial reading a hold may show so that every requirement is still met at its worst.
+    """The largest dial reading an entry may show so that every requirement is still met at its worst.
 
     reading   full indicator movement [mm], exact (the report rounds it down); 0 where no reading will do, None where no
               requirement depends on it
     planned   what the job file plans, or has measured (`measured`) [mm];  by  instance of the stack that sets it
+    step      entry of a hold (centre, and_centre, square), or through, fit, bought, bought-face, machine
+    on        the surface or device it is read on;  op  None for bought parts and machines
     also      other operations held by the same device with its mark kept: one reading for all
     least     the reading must not be below this: a known high spot takes away from another
     high_at   where that high spot must stay
+    paths     the entries of the job file, one for each operation it serves
+    limits    what each requirement allows by itself, the tightest first
+    indicator one division of the indicator that reads it [mm], 0 where the entry names none
     """
 
     key: str
-    op: int
+    op: int | None
     step: str
     on: str
     reading: float | None
@@ -45,6 +68,14 @@ class Gate:
     also: tuple[int, ...] = ()
     least: float = 0.0
     high_at: str = ""
+    paths: tuple[str, ...] = ()
+    limits: tuple[Limit, ...] = ()
+    indicator: float = 0.0
+
+    @property
+    def keys(self) -> tuple[str, ...]:
+        """What to type the reading in at, as `setupcheck vary --set` takes it."""
+        return tuple(f"{path}.measured" for path in self.paths)
 
 
 @record
@@ -76,8 +107,8 @@ def _excesses(places: Sequence[Reach], low: float | None, high: float | None) ->
     return found
 
 
-def room(places: Sequence[Reach], cause: Cause, *, low: float | None, high: float | None) -> float | None:
-    """Factor by which one cause without direction may grow (or must shrink) until the worst case meets its limit.
+def room(places: Sequence[Reach], *causes: Cause, low: float | None = None, high: float | None = None) -> float | None:
+    """Factor by which causes without direction may grow (or must shrink) together until the worst case meets its limit.
 
     1 + margin / push, over the places the figure is the worst of; 0 where it cannot help.  None where the cause does not
     reach the figure.
@@ -86,14 +117,14 @@ def room(places: Sequence[Reach], cause: Cause, *, low: float | None, high: floa
     found: list[float] = []
     for one in places:
         base, pushes = one.base, one.pushes
-        mine = next((p for p in pushes if p.cause == cause), None)
-        if mine is None:
+        mine = [p for p in pushes if p.cause in causes]
+        if not mine:
             continue
         margins = []
         if high is not None:
-            margins.append((high - base - sum(p.up for p in pushes), mine.up))
+            margins.append((high - base - sum(p.up for p in pushes), sum(p.up for p in mine)))
         if low is not None:
-            margins.append((base - sum(p.down for p in pushes) - low, mine.down))
+            margins.append((base - sum(p.down for p in pushes) - low, sum(p.down for p in mine)))
         pushed = [1.0 + margin / push for margin, push in margins if push > 0.0]
         if pushed and any(margin < 0.0 for margin, push in margins if push <= 0.0):
             pushed.append(0.0)  # the other limit is passed without it, so no size of it will do
@@ -120,85 +151,133 @@ def rounded_down(reading: float) -> float:
 
 
 def gates(scopes: Sequence[Scope], results: Sequence[tuple[str, Result]]) -> list[Gate]:
-    """One gate for each hold entry whose error is a dial reading; one for all holds of a device whose mark is kept.
+    """One gate for each entry that is a dial reading; one for all holds of a device whose mark is kept.
 
     FIM = (limit - what all others need) / (figure per FIM), the smallest over the requirements.
     """
     found: list[Gate] = []
     shared: dict[str, int] = {}
-    behind = [
-        _Behind(key, result, places, origins(places)) for key, result in results for places in [reaches(result.figure)]
-    ]
-    for scope in scopes:
-        entry = scope.node
-        if not isinstance(entry, HoldEntry) or entry.key == "error" or entry.error is None or scope.op is None:
+    behind = stacks_behind(results)
+    for entry in dial_entries(scopes):
+        if not entry.planned and not guard_of(entry.given):
             continue
-        given = entry.error
-        planned = given.measured if given.measured is not None else given.at_most
-        if not planned:
-            continue
-        if given.device and given.mark == "kept" and given.high_at is None:
-            same = kept_key(given, entry.key, second=entry.step == "and_centre")
+        same = kept_as(entry)
+        if same and entry.given.high_at is None:
             if same in shared:
+                assert entry.op is not None
                 first = found[shared[same]]
-                found[shared[same]] = replace(first, also=(*first.also, scope.op))
+                found[shared[same]] = replace(first, also=(*first.also, entry.op), paths=(*first.paths, entry.path))
                 continue
             shared[same] = len(found)
-        gate = _gate(scope, entry, given, planned, behind)
-        found.append(gate)
+        assert isinstance(scopes[0].node, Floor)
+        found.append(_gate(scopes[0].node, entry, same, behind))
     return found
 
 
+def kept_as(entry: DialEntry) -> str:
+    """Name of the one cause of a device whose mark is kept; empty for every other entry."""
+    given = entry.given
+    if not (given.device and given.mark == "kept"):
+        return ""
+    return kept_key(given, entry.key, second=entry.step == "and_centre")
+
+
 @record(eq=False)
-class _Behind:
-    """One stack, where it is the worst, and every cause behind it."""
+class Behind:
+    """One stack, where it is the worst, and the causes behind it by the path (or the name) they were stated with."""
 
     key: str
     result: Result
     places: list[Reach]
-    causes: list[Cause]
+    stated: dict[str, list[Cause]]
+
+    def causes(self, *names: str) -> list[Cause]:
+        return [cause for name in names if name for cause in self.stated.get(name, ())]
 
 
-def _gate(
-    scope: Scope,
-    entry: HoldEntry,
-    given: Deviation,
-    planned: float,
-    behind: Sequence[_Behind],
-) -> Gate:
-    path = f"{scope.path}.{entry.key}"
-    kept = (
-        kept_key(given, entry.key, second=entry.step == "and_centre") if given.device and given.mark == "kept" else ""
-    )
-    lowest, highest, by = 0.0, math.inf, ""
+def stacks_behind(results: Sequence[tuple[str, Result]]) -> list[Behind]:
+    """All stacks that have a limit, taken apart once for all their entries."""
+    found = []
+    for key, result in results:
+        places = reaches(result.figure)
+        stated: dict[str, list[Cause]] = {}
+        for cause in origins(places):
+            for name in (cause.key,) if cause.shared else cause.paths:
+                stated.setdefault(name, []).append(cause)
+        found.append(Behind(key, result, places, stated))
+    return found
+
+
+def _gate(floor: Floor, entry: DialEntry, kept: str, behind: Sequence[Behind]) -> Gate:
+    given, guard = entry.given, guard_of(entry.given)
+    limits = []
     directed = False
     for one in behind:
-        for cause in one.causes:
-            if path not in cause.paths and not (kept and cause.key == kept):
-                continue
-            directed = directed or bool(cause.mean)
-            stack = one.result.stack
-            low, high = span(
-                one.result.figure, one.places, cause, planned, guard_of(given), low=stack.low, high=stack.high
+        causes = one.causes(entry.path, kept)
+        if not causes:
+            continue
+        directed = directed or any(cause.mean for cause in causes)
+        stack = one.result.stack
+        if any(
+            cause.law == "blur" and not cause.mean for cause in causes
+        ):  # its direction went into a turn nobody knows
+            low, high = _walked_again(floor, entry, one)
+        else:
+            low, high = span_of(
+                one.result.figure, one.places, causes, entry.planned, guard, low=stack.low, high=stack.high
             )
-            lowest = max(lowest, low)
-            if high < highest:
-                highest, by = high, one.key
-    assert scope.op is not None
-    reading = None if highest == math.inf else highest
-    least = lowest
+        limits.append(Limit(one.key, low, high))
+    if any(isinstance(one.result.figure, AsItRuns) for one in behind):
+        limits = _as_they_run(floor, entry, behind, limits)
+    limits.sort(key=lambda one: one.high)
+    least = max((one.low for one in limits), default=0.0)
+    reading = limits[0].high if limits and limits[0].high < math.inf else None
     return Gate(
-        scope.key,
-        scope.op,
+        entry.name,
+        entry.op,
         entry.step,
-        entry.entry.on,
+        entry.on,
         0.0 if reading is not None and reading < least else reading,
-        planned,
-        by,
+        entry.planned,
+        limits[0].by if reading is not None else "",
         measured=given.measured is not None,
         least=least,
         high_at=(given.high_at or "") if directed else "",
+        paths=(entry.path,),
+        limits=tuple(limits),
+        indicator=given.indicator or 0.0,
     )
+
+
+def _walked_again(floor: Floor, entry: DialEntry, one: Behind) -> tuple[float, float]:
+    """(least, largest) reading for one requirement by walking the route again with each reading tried."""
+    from setupcheck.quantities.trial import figure_with
+
+    return _interval(partial(_excess_again, figure_with, floor, one.result.stack, entry.path), entry.planned)
+
+
+def _as_they_run(floor: Floor, entry: DialEntry, behind: Sequence[Behind], limits: Sequence[Limit]) -> list[Limit]:
+    """The limits with those of index figures that hear of the cutter's setting looked at on the route walked again.
+
+    What a setting adds grows faster than it does, so the figure as it stands is too kind to a reading above the plan. One that
+    comes near the smallest limit is tried there, and worked out where it does not hold; the others stay as they are.
+    """
+    from setupcheck.quantities.trial import figure_with
+
+    running = {one.key: one.result.stack for one in behind if isinstance(one.result.figure, AsItRuns)}
+    least = min((one.high for one in limits), default=math.inf)
+    found = []
+    for limit in limits:
+        stack = running.get(limit.by)
+        if stack is not None and entry.planned < limit.high < NEAR * least and not kept_as(entry):
+            excess = partial(_excess_again, figure_with, floor, stack, entry.path)
+            limit = replace(limit, high=falling_back(excess, entry.planned, least, limit.high))
+        found.append(limit)
+    return found
+
+
+def _excess_again(figure_with: Callable[..., Figure], floor: Floor, stack: Stack, path: str, reading: float) -> float:
+    return worst_excess(figure_with(floor.loaded, stack, (path,), measured=reading), stack.low, stack.high)
 
 
 def origins(places: Sequence[Reach]) -> list[Cause]:
@@ -220,37 +299,56 @@ def span(
     low: float | None,
     high: float | None,
 ) -> tuple[float, float]:
+    """(least, largest) reading at which one requirement is met, where one cause stands behind it: see `span_of`."""
+    return span_of(figure, places, (cause,), planned, guard, low=low, high=high)
+
+
+def span_of(
+    figure: Figure,
+    places: Sequence[Reach],
+    causes: Sequence[Cause],
+    planned: float,
+    guard: float,
+    *,
+    low: float | None,
+    high: float | None,
+) -> tuple[float, float]:
     """(least, largest) reading at which one requirement is met; (0, 0) where none will do.
 
     places          where the figure is the worst (`reaches`), found once for all its causes
+    causes          all that come from this one reading and grow with it
     planned, guard  what the entry of the job file says now, and what its uncertainty adds
     """
-    plain = not cause.mean and all(
-        cause not in p.cause.of.origins() for one in places for p in one.pushes if p.cause.of is not None
-    )
-    if plain:
-        factor = room(places, cause, low=low, high=high)
+    known = any(cause.mean for cause in causes)
+    hidden = [p.cause.of.origins() for one in places for p in one.pushes if p.cause.of is not None]
+    if not known and not any(cause in below for below in hidden for cause in causes):
+        factor = room(places, *causes, low=low, high=high)
         return (0.0, math.inf) if factor is None else (0.0, reading_for(planned, guard, factor))
 
-    if not cause.mean:
-        return _straight(figure, places, cause, planned, low=low, high=high)
+    def at(factor: float) -> Figure:
+        other = figure
+        for cause in causes:
+            other = with_cause(other, cause, cause.scaled(factor))
+        return other
 
-    def excess(reading: float) -> float:
-        return worst_excess(with_cause(figure, cause, cause.scaled(reading / planned)), low, high)
+    if not known:
+        return _straight(at(0.0), places, planned, low=low, high=high)
 
-    return _interval(excess, planned)
+    return _interval(lambda reading: worst_excess(at(reading / planned), low, high), planned)
 
 
 def _straight(
-    figure: Figure, places: Sequence[Reach], cause: Cause, planned: float, *, low: float | None, high: float | None
+    without: Figure, places: Sequence[Reach], planned: float, *, low: float | None, high: float | None
 ) -> tuple[float, float]:
-    """The same for a cause without direction that also stands under high points: every excess is straight in the reading."""
+    """The same for causes without direction that also stand under high points: every excess is straight in the reading.
+
+    without  the figure with none of them
+    """
     largest = math.inf
-    none = _excesses(reaches(with_cause(figure, cause, cause.scaled(0.0))), low, high)
-    for without, with_it in zip(none, _excesses(places, low, high), strict=True):
-        if with_it > without:
-            largest = min(largest, -without / (with_it - without) * planned)
-        elif without > 0.0:
+    for none, with_it in zip(_excesses(reaches(without), low, high), _excesses(places, low, high), strict=True):
+        if with_it > none:
+            largest = min(largest, -none / (with_it - none) * planned)
+        elif none > 0.0:
             return 0.0, 0.0
     return 0.0, max(largest, 0.0)
 
@@ -258,29 +356,13 @@ def _straight(
 def _interval(excess: Callable[[float], float], planned: float) -> tuple[float, float]:
     """Where a convex function of the reading is not above zero; (0, 0) where it is nowhere.
 
-    The worst case is convex in the length of one known vector (a norm of an affine function), so the best reading is found
-    by thirds and both ends by halving.  Source: textbook search, derived here.
+    The worst case is convex in the length of one known vector (a norm of an affine function).  Source: derived here.
     """
-    left, right = 0.0, 20.0 * planned + 1.0
-    a, b = left, right
-    for _ in range(80):
-        third = (b - a) / 3.0
-        if excess(a + third) <= excess(b - third):
-            b -= third
-        else:
-            a += third
-    best = (a + b) / 2.0
-    if excess(best) > 0.0:
+    most = 20.0 * planned + 1.0
+    low, high = convex_span(excess, planned, least=0.0, most=most)
+    if low > high:
         return 0.0, 0.0
-
-    def edge(inside: float, outside: float) -> float:
-        for _ in range(60):
-            half = (inside + outside) / 2.0
-            inside, outside = (half, outside) if excess(half) <= 0.0 else (inside, half)
-        return inside
-
-    low = 0.0 if excess(left) <= 0.0 else edge(best, left)
-    return low, math.inf if excess(right) <= 0.0 else edge(best, right)
+    return low, math.inf if high >= most else high
 
 
 def with_cause(figure: Figure, old: Cause, new: Cause) -> Figure:

@@ -12,6 +12,7 @@ from setupcheck.quantities.judged import Result
 from setupcheck.quantities.scopes import stack_of
 from setupcheck.report.backlash_read import backlash_read_as_data
 from setupcheck.report.contact import contacts_as_data
+from setupcheck.report.gates import gates_as_data, lengths_as_data
 from setupcheck.report.heating_plan import heating_plans_as_data
 from setupcheck.report.insert import inserts_as_data
 from setupcheck.report.joint import joints_as_data
@@ -64,22 +65,8 @@ def as_data(found: Review) -> dict[str, object]:
         "counts": {v: found.evaluation.counts[v] for v in ("pass", "warn", "fail", "open", "waived")},
         "quantities": _quantities(found),
         "stacks": [_stack(found, scope) for scope in found.book.instances("stack")],
-        "gates": [
-            {
-                "at": g.key,
-                "op": g.op,
-                "on": g.on,
-                "reading": _shown(g.reading, "um"),
-                "planned": _shown(g.planned, "um"),
-                "unit": "um",
-                "by": g.by,
-                "measured": g.measured,
-                "also": list(g.also),
-                "least": _shown(g.least, "um") if g.least else None,
-                "high_at": clean(g.high_at) or None,
-            }
-            for g in found.gates
-        ],
+        "gates": gates_as_data(found),
+        "lengths": lengths_as_data(found),
         "joints": joints,
         "heating_plans": heating,
         "contacts": contact,

@@ -8,12 +8,11 @@ from setupcheck.flow import Review
 from setupcheck.ledger.combine import TRIALS
 from setupcheck.notation import show
 from setupcheck.quantities.book import Open, Scope
-from setupcheck.quantities.finished import finished
-from setupcheck.quantities.gates import Gate
 from setupcheck.quantities.judged import Result
 from setupcheck.report.backlash_read import backlash_read
 from setupcheck.report.causes import cause_in_words
 from setupcheck.report.contact import contacts
+from setupcheck.report.gates import dials_in_words, lengths_in_words
 from setupcheck.report.heating_plan import heating_plans
 from setupcheck.report.insert import inserts
 from setupcheck.report.joint import joints
@@ -23,15 +22,13 @@ from setupcheck.report.remedies import remedy_in_words
 from setupcheck.report.rests import how_known, record_used, rests_in_words
 from setupcheck.report.then_now import then_now
 from setupcheck.report.uncomputed import in_lines, uncomputed
-from setupcheck.report.wording import as_stated, clean, finer, in_unit, on_the_dial, title_of, unit_of, wrap
+from setupcheck.report.wording import clean, finer, in_unit, title_of, unit_of, wrap
 from setupcheck.report.worked_out import worked_out
 from setupcheck.rulebook import VERDICTS, CautionLine, Finding
 
 CAUTIONS_SHOWN = 5
 """Cautions of one operation shown without --all. Source: our screening choice."""
 CAUSES_SHOWN = 3
-NOT_CRITICAL = 10.0
-"""A dial may show so many times its plan: no number is worth printing. Source: our screening choice."""
 
 
 def as_text(found: Review, *, everything: bool = False) -> str:
@@ -56,7 +53,8 @@ def as_text(found: Review, *, everything: bool = False) -> str:
         _worked_out(found),
         record_used(found),
         _uncomputed(found),
-        _gates(found),
+        dials_in_words(found, everything=everything),
+        lengths_in_words(found, everything=everything),
         _cautions(found, everything),
     ):
         block = list(part)
@@ -282,54 +280,6 @@ def _statistics(result: Result, unit: str, digits: int, confidence: float) -> st
     if c.chance is not None and c.chance < 1.0 and c.chance_error is not None:
         text += f"; chance of meeting it {c.chance * 100:.2f} ± {c.chance_error * 100:.2f} %"
     return text + "."
-
-
-def _gates(found: Review) -> Iterator[str]:
-    over = finished(found.loaded.job)
-    gates = [gate for gate in found.gates if not over.issuperset((gate.op, *gate.also))]
-    if not gates:
-        return
-    inches = found.book.inches
-    titles = {scope.key: title_of(scope) for scope in found.book.instances("stack")}
-    yield "DIAL READING TO ACCEPT, all else as planned"
-    idle = [gate for gate in gates if _is_idle(gate)]
-    lost: dict[str, list[str]] = {}
-    for gate in gates:
-        title = titles.get(gate.by, gate.by)
-        if gate.reading is not None and gate.reading <= 0.0:
-            lost.setdefault(title, []).append(_dial(gate))
-        elif gate not in idle:
-            yield from wrap(_gate(gate, title, inches=inches), first="  ", rest="      ")
-    for title, dials in lost.items():
-        yield from wrap(f"no reading alone brings {title} inside: {'; '.join(dials)}", first="  ", rest="      ")
-    if idle:
-        yield from wrap("not critical: " + "; ".join(_dial(gate) for gate in idle), first="  ", rest="      ")
-
-
-def _is_idle(gate: Gate) -> bool:
-    """No requirement looks at this reading, or only from far away: a number would say nothing."""
-    return gate.least <= 0.0 and (gate.reading is None or gate.reading > NOT_CRITICAL * gate.planned)
-
-
-def _dial(gate: Gate) -> str:
-    """`op 40, face run-out on seat`; `op 30 and 40, run-out on bore` where one device with its mark kept serves both."""
-    ops = " and ".join(str(op) for op in dict.fromkeys((gate.op, *gate.also)))
-    reading = {"square": "face run-out", "and_centre": "run-out in the second plane"}.get(gate.step, "run-out")
-    return f"op {ops}, {reading} on {gate.on}"
-
-
-def _gate(gate: Gate, by: str, *, inches: bool) -> str:
-    planned = f"{as_stated(gate.planned, inches=inches)} {'measured' if gate.measured else 'planned'}"
-    high = f", high at {clean(gate.high_at)}" if gate.high_at else ""
-    span = []
-    if gate.least > 0.0:
-        span.append(f"at least {on_the_dial(gate.least, inches=inches, up=True)}")
-    if gate.reading is not None:
-        span.append(f"up to {on_the_dial(gate.reading, inches=inches)}")
-    text = f"{_dial(gate)}: {' and '.join(span)}{high} ({planned})"
-    if gate.reading is not None:
-        text += f", set by {by}"
-    return text + ("; this high spot takes away from another" if gate.least > 0.0 else "")
 
 
 def _worked_out(found: Review) -> Iterator[str]:

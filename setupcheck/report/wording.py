@@ -65,17 +65,21 @@ def title_of(scope: Scope) -> str:
     return f"{what} at {spoken(stack) or 'the mesh'}"
 
 
-def on_the_dial(value: float, *, inches: bool, up: bool = False) -> str:
+def on_the_dial(value: float, *, inches: bool, up: bool = False, step: float = 0.0) -> str:
     """A dial reading, rounded down (or up) to what an indicator shows: 0.1 um below 10 um, else 1 um; 0.01 or 0.1 thou.
+
+    step  one division of the indicator, where it is known [mm]
 
     >>> on_the_dial(0.00437, inches=False), on_the_dial(0.0539, inches=False), on_the_dial(0.0254, inches=True)
     ('4.3 um', '53 um', '1.0 thou')
+    >>> on_the_dial(0.00437, inches=False, step=0.002)
+    '4 um'
     """
     unit = INCH["um"] if inches else "um"
     digits = (1 if inches else 0) + (value < FINE_BELOW)
-    steps = value * FACTOR[unit] * 10**digits
+    steps = value / step if step else value * FACTOR[unit] * 10**digits
     whole = math.ceil(steps - ROUNDING) if up else math.floor(steps + ROUNDING)
-    return show(whole / 10**digits / FACTOR[unit], unit, digits)
+    return as_stated(whole * step, inches=inches) if step else show(whole / 10**digits / FACTOR[unit], unit, digits)
 
 
 def as_stated(value: float, *, inches: bool) -> str:

@@ -9,7 +9,6 @@ import pytest
 
 from setupcheck.flow import Review, review
 from setupcheck.jobfile.reading import LoadedJob, read_job_text
-from setupcheck.quantities.gates import Gate
 from setupcheck.report.remedies import remedy_in_words
 from setupcheck.report.text import as_text
 from setupcheck.shipped import shipped
@@ -49,11 +48,6 @@ def margins(found: Review) -> dict[str, float]:
     return {key: r.margin for key, r in found.results.items() if r.margin is not None}
 
 
-def holds_of(gate: Gate) -> list[str]:
-    key = "face_runout" if gate.step == "square" else "runout"
-    return [f"setups.{op}.hold.{gate.step}.{key}" for op in (gate.op, *gate.also)]
-
-
 GATES = [
     pytest.param(job, i, id=f"{job.stem}-{g.key}")
     for job in JOBS
@@ -70,7 +64,7 @@ def test_a_gate_just_holds_and_a_fifth_more_does_not(job: Path, number: int) -> 
     assert gate.reading is not None
     for factor, inside in ((1.0 - 1e-6, True), (1.2, False)):
         value = f"{gate.reading * 1000.0 * factor:.7f} um"
-        after = margins(judged(typed(text, found.loaded, dict.fromkeys(holds_of(gate), value))))
+        after = margins(judged(typed(text, found.loaded, dict.fromkeys(gate.paths, value))))
         assert (min(after.values()) >= -1e-9) is inside, (gate, factor, after)
 
 

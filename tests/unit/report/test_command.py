@@ -93,6 +93,7 @@ def test_json_has_format_1_and_the_keys_that_were_promised(job: Path) -> None:
         "quantities",
         "stacks",
         "gates",
+        "lengths",
         "joints",
         "heating_plans",
         "contacts",

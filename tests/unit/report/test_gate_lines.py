@@ -11,7 +11,8 @@ from setupcheck.quantities.gates import Gate
 from setupcheck.report.json import as_json
 from setupcheck.report.text import as_text
 from setupcheck.report.wording import as_stated, on_the_dial
-from tests.unit.report.sample import GEAR, PLATE, WHEEL, flat, reviewed
+from setupcheck.shipped import shipped
+from tests.unit.report.sample import GEAR, PLATE, WHEEL, changed, flat, reviewed
 
 RUN_OUT = "run-out.wheel-teeth.spindle-bearings"
 GATE = Gate("40/centre", 40, "centre", "hub", 0.0053, 0.003, RUN_OUT)
@@ -19,7 +20,7 @@ GATE = Gate("40/centre", 40, "centre", "hub", 0.0053, 0.003, RUN_OUT)
 
 def lines(*gates: Gate, text: str = WHEEL) -> str:
     shown = as_text(replace(reviewed(text), gates=gates))
-    return flat(shown[shown.index("DIAL READING") : shown.index("\n\nCAUTIONS")]).partition("as planned ")[2]
+    return flat(shown[shown.index("DIAL READING") :].partition("\n\n")[0]).partition("as planned ")[2]
 
 
 def test_a_small_reading_is_shown_to_a_tenth_of_a_micrometre_and_its_requirement_in_words() -> None:
@@ -46,10 +47,10 @@ def test_a_planned_reading_has_no_more_decimals_than_it_needs() -> None:
 
 
 def test_a_measured_reading_is_called_measured() -> None:
-    assert "up to 5.3 um (4 um measured)" in lines(replace(GATE, planned=0.004, measured=True))
-    wheel = flat(as_text(reviewed(WHEEL)))
-    assert "op 50, run-out on hub: up to" in wheel
-    assert "(4 um measured)" in wheel
+    assert "op 40, run-out on hub: measured 4 um, up to 5.3 um would do, set by run-out" in lines(
+        replace(GATE, planned=0.004, measured=True)
+    )
+    assert "op 50, run-out on hub: measured 4 um, up to 6.2 um would do" in flat(as_text(reviewed(WHEEL)))
 
 
 def test_a_device_that_serves_two_operations_has_one_line() -> None:
@@ -60,8 +61,8 @@ def test_a_device_that_serves_two_operations_has_one_line() -> None:
 def test_a_high_spot_that_takes_away_from_another_has_a_least_reading_and_a_place() -> None:
     said = lines(replace(GATE, least=0.00201, high_at="tooth 14", measured=True))
     assert (
-        "op 40, run-out on hub: at least 2.1 um and up to 5.3 um, high at tooth 14 (3 um measured), set by run-out at teeth "
-        "about bearings; this high spot takes away from another" == said
+        "op 40, run-out on hub: measured 3 um, at least 2.1 um and up to 5.3 um would do, high at tooth 14, set by run-out "
+        "at teeth about bearings; this high spot takes away from another" == said
     )
 
 
@@ -101,3 +102,95 @@ def test_json_has_all_of_a_gate(least: float, shown: float | None) -> None:
     gate = replace(GATE, least=least, high_at="tooth 14", also=(60,), measured=True)
     (found,) = json.loads(as_json(replace(reviewed(WHEEL), gates=(gate,))))["gates"]
     assert (True, [60], shown, "tooth 14") == (found["measured"], found["also"], found["least"], found["high_at"])
+
+
+@pytest.mark.parametrize(
+    ("division", "shown"), [(0.001, "5 um"), (0.002, "4 um"), (0.0005, "5 um"), (0.00025, "5.25 um")]
+)
+def test_a_reading_stands_on_a_division_of_its_indicator(division: float, shown: str) -> None:
+    assert f"up to {shown} (3 um planned)" in lines(replace(GATE, indicator=division))
+
+
+def test_an_indicator_named_at_the_entry_rounds_its_own_gate_alone() -> None:
+    text = changed(WHEEL, ("rests: pushed, runout: 3 um}", "rests: pushed, runout: {at_most: 3 um, indicator: 2 um}}"))
+    told = flat(as_text(reviewed(text)))
+    assert "op 40, run-out on hub: up to 4 um (3 um planned)" in told
+    assert "op 50, run-out on hub: measured 4 um, up to 6.2 um would do" in told
+
+
+def test_what_is_no_hold_is_called_what_it_is() -> None:
+    told = flat(as_text(reviewed(WHEEL)) + as_text(reviewed(GEAR)))
+    assert "spindle.journal, run-out as bought: up to 3.8 um (2 um planned)" in told
+    assert "lathe-A, run-out of its axis: up to 4.2 um (2 um planned)" in told
+    assert "op 40, run-out of centres under bore: up to 8.0 um (3 um planned)" in told
+    fitted = shipped("jobs/coupling-hub.yaml").read_text(encoding="utf-8")
+    assert "op 50, run-out of bore on its seat: up to 5.1 um (4 um planned)" in flat(as_text(reviewed(fitted)))
+
+
+def lengths(text: str, *, everything: bool = False) -> str:
+    told = as_text(reviewed(text), everything=everything)
+    return flat(told[told.index("LENGTH TO ACCEPT") :].partition("\n\n")[0])
+
+
+def test_a_length_has_two_ends_rounded_inwards_and_its_plan() -> None:
+    told = lengths(WHEEL)
+    assert (
+        "op 40, stop on seat: -20 um to +16 um (\u00b110 um planned), set by mid-plane at teeth about bearings" in told
+    )
+    assert "op 70, shim: 1.487 mm to 1.509 mm (1.5 mm planned), set by mid-plane" in told
+    assert "op 40, depth of teeth: -11 um to +16 um (\u00b15 um planned), set by backlash" in told
+
+
+def test_a_measured_length_says_so_and_keeps_its_sign() -> None:
+    text = changed(
+        WHEEL, ("stop:   {on: seat, error: 5 um}", "stop: {on: seat, error: {at_most: 5 um, measured: -3 um}}")
+    )
+    assert "op 50, stop on seat: measured -3 um, -11 um to +15 um would do" in lengths(text)
+
+
+def test_lengths_in_an_inch_file_are_in_thou_and_a_division_rounds_them() -> None:
+    assert (
+        "op 40, clocking on holes: -0.8 thou to +0.8 thou (\u00b10.3 thou planned), set by slot to the holes"
+        in lengths(PLATE)
+    )
+    text = changed(
+        WHEEL, ("stop:   {on: seat, error: 5 um}", "stop: {on: seat, error: {at_most: 5 um, indicator: 2 um}}")
+    )
+    assert "op 50, stop on seat: -10 um to +14 um (\u00b15 um planned)" in lengths(text)
+
+
+def test_lengths_far_from_any_limit_share_one_line_and_lost_ones_another() -> None:
+    far = changed(WHEEL, ("what: mid-plane, at_most: 80 um", "what: mid-plane, at_most: 8 mm"))
+    assert "not critical: op 40, stop on seat; op 40, mid-plane found" in lengths(far)
+    lost = changed(WHEEL, ("what: mid-plane, at_most: 80 um", "what: mid-plane, at_most: 8 um"))
+    assert "no length alone brings mid-plane at teeth about bearings inside: op 40, stop on seat" in lengths(lost)
+
+
+def test_all_tells_which_requirements_come_next() -> None:
+    told = flat(as_text(reviewed(WHEEL), everything=True))
+    assert (
+        "up to 5.2 um (3 um planned), set by backlash-swing at teeth about bearings; next index-within at teeth" in told
+    )
+
+
+def test_json_has_the_key_the_step_and_each_requirement_of_a_gate_and_the_ends_of_a_length() -> None:
+    data = json.loads(as_json(reviewed(WHEEL)))
+    gate = next(g for g in data["gates"] if g["at"] == "50/centre")
+    assert ("setups.50.hold.centre.runout.measured", 0.1, [], True) == (
+        gate["key"],
+        gate["step"],
+        gate["band"],
+        gate["measured"],
+    )
+    swing, index = (
+        next(v for k, v in gate["requirements"].items() if k.startswith(w)) for w in ("backlash-sw", "index-w")
+    )
+    assert gate["reading"] == swing < index
+    shim = next(g for g in data["lengths"] if "spacers" in g["key"])
+    assert ("setups.70.join.stop.spacers[1].length.measured", "mm", 1.5, None) == (
+        shim["key"],
+        shim["unit"],
+        shim["planned"],
+        shim["measured"],
+    )
+    assert 1.48 < shim["low"] < 1.5 < shim["high"] < 1.52
