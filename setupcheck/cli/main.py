@@ -18,7 +18,7 @@ plugins.leave_out()
 
 import typer  # noqa: E402
 
-from setupcheck.cli import contact, index, insert, readings, record, review, rules, schema, vary, working  # noqa: E402
+from setupcheck.cli import contact, index, insert, new, readings, record, review, rules, schema, vary, working  # noqa: E402
 from setupcheck.errors import SetupcheckError  # noqa: E402
 
 app = typer.Typer(
@@ -31,6 +31,7 @@ app = typer.Typer(
     epilog="Exit: 0 pass, 1 warn or open, 2 wrong use or unreadable job, 3 fail.",
 )
 app.command("review")(review.command)
+app.command("new")(new.command)
 app.command("working")(working.command)
 app.command("contact")(contact.command)
 app.command("insert")(insert.command)

@@ -37,6 +37,12 @@ class Answers:
         """How sizes are written."""
         return Measure(self.units)
 
+    def with_value(self, name: str, value: object) -> Answers:
+        """The same with one more answer."""
+        if not isinstance(value, float | str | Size):
+            raise TypeError(f"{name} was read as {type(value).__name__}")
+        return Answers(self.kind, self.title, self.job, self.units, {**self.values, name: value})
+
     def number(self, name: str) -> float:
         """A size [mm], count, or torque [N mm]."""
         value = self.values[name]

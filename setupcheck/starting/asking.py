@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import textwrap
 from collections.abc import Iterable, Sequence
 from typing import Literal
 
@@ -12,6 +13,8 @@ from setupcheck.starting.layout import Measure, nice, quoted_text
 
 Way = Literal["at_most", "at_least", "between", "stated"]
 
+WIDEST = 118
+"""Characters of a comment. Source: our choice."""
 LEAST_LIMIT = 0.005
 """Smallest limit written where the plan's worst is less [mm]. Source: our choice; what a workshop can read with ease."""
 
@@ -30,23 +33,27 @@ class Ask:
 
 
 def head(answers: Answers, opening: Iterable[str], made_by: str) -> str:
-    """The lines above the parts.  opening  what this plan is, as comments"""
-    comments = "\n".join(f"# {line}" for line in opening)
-    room = "room: 20 degC\n"
+    """The lines above the parts.  opening  what this plan is;  made_by  the command that begins the same file again"""
     return f"""\
-# For completion in an editor: setupcheck schema -o job.schema.json, and take one # and the blank off the next line.
-# # yaml-language-server: $schema=job.schema.json
-{comments}
+{commented(opening)}
 #
-# Begun with `{made_by}`. Nothing here was measured. What stands behind GUESS is a usual figure, to be replaced by your own.
-# Where a device has no figure of its own, as in {{device: four-jaw}}, a typical one stands in, and the review says so each
-# time; write yours over it, as in runout: 8 um.
+# Begun with:
+{commented(textwrap.wrap(made_by, WIDEST, break_long_words=False, break_on_hyphens=False, initial_indent="  ", subsequent_indent="    "))}
+# Nothing here was measured. What stands beside GUESS is a usual figure, to be replaced by your own. Where a device has no
+# figure of its own, as in {{device: four-jaw}}, a typical one stands in, and the review says so each time; write yours over
+# it, as in runout: 8 um.
 setupcheck: 1
 title: {quoted_text(answers.title)}
 job: {quoted_text(answers.job)}
 units: {answers.units}          # of sizes and positions; an error always carries its own unit
-{room}confidence: 95 %
+room: 20 degC
+confidence: 95 %
 """
+
+
+def commented(lines: Iterable[str]) -> str:
+    """Lines as comments."""
+    return "\n".join(f"# {line}" for line in lines)
 
 
 def requirements(asks: Sequence[Ask], answers: Answers, figures: Figures, about: str) -> str:
@@ -60,8 +67,8 @@ def requirements(asks: Sequence[Ask], answers: Answers, figures: Figures, about:
             limit = f", at_most: {asked}"
         lines.append(f"  - {{{ask.says}{limit}}}{f'    # {ask.why}' if ask.why else ''}")
     return f"""
-# What the finished part must meet{about}. Limits that were not asked for are GUESS: what this plan keeps at its worst,
-# with some room. Write what the drawing asks, and add what it asks beyond them.
+# What the finished part must meet{about}.
+# Limits that were not asked for are GUESS: what this plan keeps at its worst, with some room. Write what the drawing asks.
 require:
 {chr(10).join(lines)}
 """

@@ -25,7 +25,7 @@ def questions() -> tuple[Question, ...]:
         Question("width", "How long is it?", "bush and eye alike", in_size(6.0, 300.0),
                  lambda a: a.measure.size(a.measure.up(1.2 * a.number("outside")))),
         Question("torque", "What torque must its seat carry?", "what the shaft drags on it", in_torque,
-                 lambda a: f"{max(1.5e-7 * a.number('outside') ** 2 * a.number('width') * 1000.0, 0.05):.2g} N m"),
+                 lambda a: f"{max(0.8e-7 * a.number('outside') ** 2 * a.number('width') * 1000.0, 0.05):.2g} N m"),
         Question("tightest", "Run-out of the hole to the boss, at most?",
                  "full movement of the dial; plan takes what the plan keeps", in_limit, lambda a: "plan"),
     )  # fmt: skip
@@ -56,8 +56,9 @@ def write(answers: Answers, figures: Figures, made_by: str) -> str:
         Ask("what: run-out, of: bush.hole, about: lever.eye"),
         Ask(f"what: squareness, of: lever.side, about: bush.hole, across: {side}"),
         Ask("what: allowance, of: bush.hole@40", "at_least", "stock left for the boring cut at its thinnest"),
-        Ask(f"what: torque, of: 20, at_least: {answers.number('torque') / 1000.0:g} N m", "stated"),
     )
+    if answers.number("torque") > 0.0:
+        asks += (Ask(f"what: torque, of: 20, at_least: {answers.number('torque') / 1000.0:g} N m", "stated"),)
     return f"""\
 {head(answers, OPENING, made_by)}
 # Surfaces in each part's own frame: z along the axis, 0 at the back. `made: stock` is there before the first setup.
@@ -68,7 +69,7 @@ parts:
       boss:  {{kind: cylinder, diameter: {u.size(boss)}, from: 0, to: {u.size(length)}, made: stock}}
       # the eye as measured, or its class as in {u.size(out)} H7: then the bush needs a narrower size of its own
       eye:   {{kind: bore, diameter: {{nominal: {u.exact(out)}, measured: {u.exact(out)}, uncertainty: {u.error(0.002)}}}, \
-from: 0, to: {u.size(length)}, roughness: Rz 6.3 um}}    # GUESS: to be measured
+from: 0, to: {u.size(length)}, roughness: Rz 4 um}}    # GUESS: to be measured
       side:  {{kind: face, at: 0, facing: -z, diameter: {u.size(boss)}}}
       front: {{kind: face, at: {u.size(length)}, facing: +z, diameter: {u.size(boss)}}}
     given:      # GUESS: a finished lever, as inspected; no setup here makes these
@@ -80,7 +81,7 @@ from: 0, to: {u.size(length)}, roughness: Rz 6.3 um}}    # GUESS: to be measured
       bar:   {{kind: cylinder, diameter: {u.size(bar)}, from: {u.size(chuck)}, to: {u.size(length + 2.0)}, made: stock}}
       back:  {{kind: face, at: 0, facing: -z, diameter: {u.size(face)}}}
       front: {{kind: face, at: {u.size(length)}, facing: +z, diameter: {u.size(face)}}}
-      out:   {{kind: cylinder, diameter: {journal}, from: 0, to: {u.size(length)}, roughness: Rz 6.3 um}}
+      out:   {{kind: cylinder, diameter: {journal}, from: 0, to: {u.size(length)}, roughness: Rz 4 um}}
       hole:  {{kind: bore, diameter: {bore_text(answers)}, from: 0, to: {u.size(length)}}}
 
 # Replace names and figures by those of your shop; axis_runout is how truly the spindle itself turns.

@@ -2,7 +2,8 @@
 
 from __future__ import annotations
 
-from setupcheck.starting.answers import Answers, Question, in_bore, in_limit, in_module, in_size, whole
+from setupcheck.errors import SetupcheckError
+from setupcheck.starting.answers import Answers, Question, Value, in_bore, in_limit, in_module, in_size, whole
 from setupcheck.starting.asking import Ask, head, requirements
 from setupcheck.starting.dividing import division, passes
 from setupcheck.starting.figures import Figures
@@ -26,7 +27,7 @@ def questions() -> tuple[Question, ...]:
             lambda a: "1.5" if a.units == "mm" else "16 DP",
         ),
         Question(
-            "bore", "What bore and fit?", "as the drawing has it, 20 H7", in_bore, lambda a: _bore(a)
+            "bore", "What bore and fit?", "as the drawing has it, 20 H7", _bore, _usual_bore
         ),
         Question(
             "width", "How wide is the face?", "from one end to the other", in_size(2.0, 300.0),
@@ -39,14 +40,26 @@ def questions() -> tuple[Question, ...]:
     )  # fmt: skip
 
 
-def _bore(answers: Answers) -> str:
+def _usual_bore(answers: Answers) -> str:
     root = answers.number("module") * (answers.number("teeth") - 2.5)
-    return f"{answers.measure.size(answers.measure.down(max(root * 0.36, 3.0)))} H7"
+    return f"{answers.measure.size(answers.measure.down(min(max(root * 0.36, 3.0), most_bore(answers))))} H7"
 
 
 def most_bore(answers: Answers) -> float:
     """Largest bore that leaves a wall of two and a half modules under the teeth [mm]. Source: our screening choice."""
-    return answers.number("module") * (answers.number("teeth") - 2.5 - 5.0)
+    return answers.number("module") * max(answers.number("teeth") - 2.5 - 5.0, 1.0)
+
+
+def _bore(text: str, answers: Answers) -> Value:
+    found = in_bore(text, answers)
+    nominal = Answers("", "", "", answers.units, {"bore": found}).number("bore")
+    if nominal > most_bore(answers):
+        show = answers.measure
+        raise SetupcheckError(
+            f"a bore of {show.told(nominal)} leaves no wall under {answers.number('teeth'):.0f} teeth of module "
+            f"{answers.number('module'):g} mm. Write {show.told(show.down(most_bore(answers)))} or less, or a larger module"
+        )
+    return found
 
 
 def write(answers: Answers, figures: Figures, made_by: str) -> str:

@@ -16,6 +16,9 @@ OPENING = (
 THINNEST = 1.3
 """Outside over bore that a hub has at the least. Source: our screening choice; the review judges its strength."""
 
+LEAST_SHRUNK = 25.0
+"""Smallest bore that is proposed to be shrunk on [mm]. Source: our screening choice; below it the heat gets too much."""
+
 
 def questions() -> tuple[Question, ...]:
     """What is asked of a coupling hub."""
@@ -27,7 +30,8 @@ def questions() -> tuple[Question, ...]:
         Question("width", "How long is it?", "from the back, which meets the shoulder, to the front", in_size(10.0, 400.0),
                  lambda a: a.measure.size(a.measure.up(max(0.85 * a.number("bore"), 12.0)))),
         Question("join", "How is it joined to its shaft?", "shrink: hot on cold; slide: with play, by hand",
-                 one_of("shrink", "slide"), lambda a: "shrink"),
+                 one_of("shrink", "slide"),
+                 lambda a: "shrink" if a.number("bore") >= LEAST_SHRUNK else "slide"),
         Question("torque", "What torque must it carry?", "of a shrunk joint, at the worst", in_torque, usual_torque),
         Question("tightest", "Run-out of the rim on its shaft, at most?",
                  "full movement of the dial; plan takes what the plan keeps", in_limit, lambda a: "plan"),
@@ -158,6 +162,6 @@ def _asks(answers: Answers, front: str, seat_face: str) -> tuple[Ask, ...]:
         Ask(f"what: squareness, of: hub.back, about: shaft.shoulder, across: {seat_face}"),
         Ask("what: allowance, of: hub.bore@30", "at_least", "stock left for the finishing cut at its thinnest"),
     ]
-    if answers.word("join") == "shrink":
+    if answers.word("join") == "shrink" and answers.number("torque") > 0.0:
         asks.append(Ask(f"what: torque, of: 50, at_least: {answers.number('torque') / 1000.0:g} N m", "stated"))
     return tuple(asks)

@@ -2,12 +2,16 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable
+import shlex
+from collections.abc import Callable, Mapping
 from typing import TYPE_CHECKING
 
+from setupcheck.errors import SetupcheckError, printable
+from setupcheck.notation import nearest
 from setupcheck.record import record
 from setupcheck.starting import bush, gear, hub, plate, ring, wheel
 from setupcheck.starting.answers import Answers, Question
+from setupcheck.starting.checking import modeline, to_check
 from setupcheck.starting.figures import Figures, settled
 
 if TYPE_CHECKING:
@@ -81,6 +85,29 @@ KINDS: dict[str, Kind] = {
 """By their names."""
 
 
+def kind_of(text: str) -> Kind:
+    """A kind by its name.
+
+    Raises: SetupcheckError with the nearest and a list.
+    """
+    word = text.strip()
+    if word in KINDS:
+        return KINDS[word]
+    near = nearest(word, KINDS)
+    said = f"'{printable(word[:60])}' is no kind of part here. {f'Did you mean {near}? ' if near else ''}There are:"
+    raise SetupcheckError("\n".join([said, *(f"  {kind.name:<22}{kind.says}" for kind in KINDS.values())]))
+
+
+def command_of(kind: Kind, units: str, texts: Mapping[str, str]) -> str:
+    """The command that begins the same file again, title and job number apart, in one line.
+
+    >>> command_of(KINDS["bushing"], "mm", {"bore": "30 H7"})
+    "setupcheck new FILE --kind bushing --units mm --bore '30 H7' --yes"
+    """
+    options = " ".join(f"--{name} {shlex.quote(printable(' '.join(text.split())))}" for name, text in texts.items())
+    return f"setupcheck new FILE --kind {kind.name} --units {units} {options} --yes"
+
+
 @record(eq=False)
 class Started:
     """A new job file as text, and its review."""
@@ -89,19 +116,22 @@ class Started:
     review: Review
 
 
-def start(answers: Answers, *, file: str, made_by: str) -> Started:
+def start(answers: Answers, *, file: str, made_by: str, schema: bool = False) -> Started:
     """The job file of some answers, its figures settled by its own reviews.
 
-    file  name that messages give;  made_by  the command, for a comment
+    file    name that messages give;  made_by  the command, for a comment
+    schema  whether job.schema.json lies beside the file
     Raises: SetupcheckError where the answers give no readable plan.
     """
     from setupcheck.flow import review
     from setupcheck.jobfile.reading import read_job_text
 
     kind, figures = KINDS[answers.kind], Figures()
-    joint = kind.joint if answers.values.get("join", "shrink") in ("shrink", "press") else None
+    joint = kind.joint if answers.values.get("join", "shrink") != "slide" else None
+    found: Review | None = None
     for _ in range(ROUNDS):
-        draft = kind.write(answers, figures, made_by)
-        figures = settled(review(read_job_text(draft, file)), figures, answers, bore=joint)
-    text = kind.write(answers, figures, made_by)
+        found = review(read_job_text(kind.write(answers, figures, made_by), file))
+        figures = settled(found, figures, answers, bore=joint)
+    cautions = found.evaluation.cautions if found is not None else ()
+    text = modeline(schema=schema) + kind.write(answers, figures, made_by) + to_check(cautions)
     return Started(text, review(read_job_text(text, file)))

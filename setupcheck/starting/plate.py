@@ -74,7 +74,7 @@ def write(answers: Answers, figures: Figures, made_by: str) -> str:
     """The job file."""
     u, count, circle = answers.measure, int(answers.number("holes")), answers.number("circle")
     hole, outside, thick = answers.number("hole"), answers.number("outside"), answers.number("width")
-    stock, grip, across = u.up(outside + 4.0), u.up(max(14.0, 0.12 * outside)), u.size(u.down(0.85 * outside))
+    stock, grip, across = u.up(outside + 4.0), u.up(max(thick + 10.0, 0.2 * outside)), u.size(u.down(0.85 * outside))
     asks = (
         Ask("what: position, of: plate.holes, about: plate.bore"),
         Ask("what: pitch-circle, of: plate.holes, about: plate.bore", "between"),

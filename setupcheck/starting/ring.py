@@ -14,11 +14,14 @@ OPENING = (
 PAIRED = 0.00024
 """Interference of ring and seat as paired, share of the bore. Source: our screening choice; the review judges heat and grip."""
 
+LEAST_BORE = 20.0
+"""Smallest ring that this plan is for [mm]. Source: our screening choice; smaller ones are pressed on cold."""
+
 
 def questions() -> tuple[Question, ...]:
     """What is asked of a bearing ring and its seat."""
     return (
-        Question("bore", "What bore has the ring?", "its nominal size, as in the maker's list", in_size(10.0, 250.0),
+        Question("bore", "What bore has the ring?", "its nominal size, as in the maker's list", in_size(LEAST_BORE, 250.0),
                  lambda a: "50" if a.units == "mm" else "2"),
         Question("outside", "What diameter has its raceway?", "of the inner ring, at the bottom of the track",
                  lambda t, a: in_size(1.08 * a.number("bore"), 1.8 * a.number("bore"))(t, a),

@@ -34,6 +34,10 @@ CLEARANCE = 0.2
 CUTTER = 1.45
 """Tip radius of the cutter over the worm's radius with clearance. Source: our screening choice; the review judges it."""
 
+LEAST_SHRUNK = 18.0
+"""Smallest bore that is proposed to be shrunk on [mm]. Source: our screening choice; below it, limits, peaks and heat leave
+no interference that suits."""
+
 
 def questions() -> tuple[Question, ...]:
     """What is asked of a worm wheel."""
@@ -54,7 +58,7 @@ def questions() -> tuple[Question, ...]:
         Question("bore", "What bore and fit?", "as the drawing has it, 32 H6", _bore, _usual_bore),
         Question(
             "join", "How is the wheel joined to its spindle?", "shrink: hot on cold; slide: with play; none: not in this plan",
-            one_of("shrink", "slide", "none"), lambda a: "shrink",
+            one_of("shrink", "slide", "none"), _usual_join,
         ),
         Question("torque", "What torque must it carry?", "of a shrunk joint, at the worst", in_torque, usual_torque),
         Question(
@@ -68,6 +72,10 @@ def usual_torque(answers: Answers) -> str:
     """A torque that a shrunk bronze hub of this bore carries [N m]. Source: our screening choice."""
     torque = 0.0008 * answers.number("bore") ** 3  # N m for a bore in mm
     return f"{max(torque, 0.1):.2g} N m"
+
+
+def _usual_join(answers: Answers) -> str:
+    return "shrink" if answers.number("bore") >= LEAST_SHRUNK else "slide"
 
 
 def most_hub(answers: Answers) -> float:
@@ -130,6 +138,7 @@ def write(answers: Answers, figures: Figures, made_by: str) -> str:
     machine, divide = division(s.z, "dividing-head-B", ", nose_points: left, cutter_stands: front")
     bar, chuck = u.up(s.rim + 5.0), -u.up(max(40.0, 0.42 * s.rim))
     across, width = u.size(u.down(0.9 * s.seat)), s.thread + 0.03 + figures.thicker
+    serves = "" if join == "shrink" else ", serves_at: [5 degC, 45 degC]"  # a joint that is shrunk says it itself
     leans = "nose-down" if hand == "right" else "nose-up"
     return f"""\
 {head(answers, OPENING, made_by)}
@@ -163,7 +172,7 @@ worm:
   thread_thickness: {u.plus_minus(s.thread, 0.010)}    # GUESS: along the axis at the reference diameter, half the pitch less some play
   end_float: {u.error(0.010)}               # GUESS
 # centre distance = half of both reference diameters; its tolerance and the squareness of the axes are GUESS
-mesh: {{wheel: wheel.teeth, centre_distance: {u.plus_minus(s.distance, 0.010)}, shaft_angle_error: 1', housing: grey-iron}}
+mesh: {{wheel: wheel.teeth, centre_distance: {u.plus_minus(s.distance, 0.010)}, shaft_angle_error: 1', housing: grey-iron{serves}}}
 # The cutter's tip radius has to be larger than the worm's, or the ends of the face bear; the insert's width at pitch height
 # rules the backlash.
 cutters:
@@ -287,6 +296,6 @@ def _asks(answers: Answers, s: Sizes, join: str) -> tuple[Ask, ...]:
     if join != "none":
         disc = u.size(u.down(min(0.9 * s.disc, 1.2 * s.bore)))
         asks.append(Ask(f"what: squareness, of: wheel.back, about: spindle.shoulder, across: {disc}"))
-    if join == "shrink":
+    if join == "shrink" and answers.number("torque") > 0.0:
         asks.append(Ask(f"what: torque, of: 70, at_least: {answers.number('torque') / 1000.0:g} N m", "stated"))
     return tuple(asks)
