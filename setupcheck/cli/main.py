@@ -31,7 +31,7 @@ app = typer.Typer(
     epilog="Exit: 0 pass, 1 warn or open, 2 wrong use or unreadable job, 3 fail.",
 )
 app.command("review")(review.command)
-app.command("new")(new.command)
+app.command("new", cls=new.Command)(new.command)
 app.command("working")(working.command)
 app.command("contact")(contact.command)
 app.command("insert")(insert.command)

@@ -5,9 +5,10 @@
 import sys
 from collections.abc import Callable
 from pathlib import Path
-from typing import TYPE_CHECKING, Annotated, TypeVar
+from typing import TYPE_CHECKING, Annotated, Any, TypeVar
 
 import typer
+from typer.core import TyperCommand
 
 from setupcheck.cli.writing import refuse_new, write_new
 from setupcheck.errors import SetupcheckError
@@ -17,6 +18,8 @@ if TYPE_CHECKING:
     from setupcheck.starting.kinds import Kind, Started
 
 Text = str | None
+LIST = "list"
+"""What stands behind `--like` or `--kind` to have them listed; nothing does as well."""
 Read = TypeVar("Read")
 
 
@@ -24,13 +27,25 @@ def _option(name: str, says: str) -> object:
     return typer.Option(f"--{name}", help=says, show_default=False)
 
 
+class Command(TyperCommand):
+    """`--like` or `--kind` with nothing behind it asks for the list."""
+
+    def parse_args(self, ctx: Any, args: list[str]) -> list[str]:
+        ends = [*args[1:], "--"][: len(args)]
+        told = [
+            [arg, LIST] if arg in ("--like", "--kind") and after.startswith("--") else [arg]
+            for arg, after in zip(args, ends, strict=True)
+        ]
+        return super().parse_args(ctx, [arg for part in told for arg in part])
+
+
 def command(
     file: Annotated[
         Path | None,
         typer.Argument(metavar="FILE", help="Job file to write (YAML); nothing is replaced.", show_default=False),
     ] = None,
-    like: Annotated[Text, _option("like", "Copy this example; `--like list` tells them.")] = None,
-    kind: Annotated[Text, _option("kind", "Kind of part; `--kind list` tells them.")] = None,
+    like: Annotated[Text, _option("like", "Copy this example; alone it lists them.")] = None,
+    kind: Annotated[Text, _option("kind", "Kind of part; alone it lists them.")] = None,
     title: Annotated[Text, _option("title", "Title of the job.")] = None,
     job: Annotated[Text, _option("job", "Job number.")] = None,
     units: Annotated[Text, _option("units", "Units of the file, mm or in.")] = None,
@@ -62,7 +77,7 @@ def command(
         "tightest": tightest,
     }  # fmt: skip
     said = {name: text for name, text in given.items() if text is not None}
-    if like == "list" or kind == "list":
+    if LIST in (like, kind):
         _list(like is not None)
         return
     if file is None:

@@ -26,9 +26,9 @@ def as_started(found: Review, file: str, text: str) -> str:
         lines.append(f"  and {len(wrong) - MOST_TOLD} more")
     guesses = sum("GUESS" in line for line in text.splitlines())
     cautions = sum(c.severity == "stop-and-check" and not c.answered for c in found.evaluation.cautions)
-    typical = sum(f.verdict == "warn" and bool(f.rests_on) for f in found.evaluation.findings)
+    typical = len({name for finding in found.evaluation.findings for name in finding.rests_on})
     replace = [f"the figures beside GUESS ({guesses} lines)"] if guesses else ["every figure: all are made up"]
-    replace += [f"the {typical} typical values it warns of"] if typical else []
+    replace += [f"the {typical} typical values that stand in"] if typical else []
     lines += wrap(f"Replace {', and '.join(replace)}.", first="  ", rest="  ")
     if cautions:
         lines += wrap(

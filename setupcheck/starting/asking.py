@@ -38,7 +38,7 @@ def head(answers: Answers, opening: Iterable[str], made_by: str) -> str:
 {commented(opening)}
 #
 # Begun with:
-{commented(textwrap.wrap(made_by, WIDEST, break_long_words=False, break_on_hyphens=False, initial_indent="  ", subsequent_indent="    "))}
+{commented(_wrapped(made_by))}
 # Nothing here was measured. What stands beside GUESS is a usual figure, to be replaced by your own. Where a device has no
 # figure of its own, as in {{device: four-jaw}}, a typical one stands in, and the review says so each time; write yours over
 # it, as in runout: 8 um.
@@ -49,6 +49,12 @@ units: {answers.units}          # of sizes and positions; an error always carrie
 room: 20 degC
 confidence: 95 %
 """
+
+
+def _wrapped(command: str) -> list[str]:
+    return textwrap.wrap(
+        command, WIDEST, break_long_words=False, break_on_hyphens=False, initial_indent="  ", subsequent_indent="    "
+    )
 
 
 def commented(lines: Iterable[str]) -> str:
@@ -118,7 +124,7 @@ def shrunk(answers: Answers, figures: Figures, *, outer: str, inner: str, stop: 
       fit_error: {measure.error(0.003)}              # GUESS: what the seat's own form lets the bore run out
       stop: {stop}
       grips_first: shoulder-end      # air on the shoulder end first, or the hub draws back as it cools
-      # As hot as the tightest pair needs, with what an oven may be off. The gauge is tried in the hot bore before the hub goes on.
+      # As hot as the tightest pair needs, with what an oven may be off. The gauge is tried in the hot bore before it goes on.
       heat: {{hub: {heat:g} degC, by: oven, oven_error: 10 degC, carry: 10 s{gauge}}}
       joint: degreased
       must_carry: {{torque: {torque:g} N m}}

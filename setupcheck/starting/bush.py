@@ -51,7 +51,7 @@ def write(answers: Answers, figures: Figures, made_by: str) -> str:
     bar, chuck = u.up(out + 4.0), -u.up(max(45.0, 0.9 * length))
     journal = figures.journal or u.with_limits(out, 0.0009 * out, 0.0010 * out)
     rating = figures.rating if figures.rating is not None else 1.0e6
-    asks = (
+    asks: tuple[Ask, ...] = (
         Ask("what: run-out, of: bush.hole, about: lever.boss"),
         Ask("what: run-out, of: bush.hole, about: lever.eye"),
         Ask(f"what: squareness, of: lever.side, about: bush.hole, across: {side}"),

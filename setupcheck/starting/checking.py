@@ -29,6 +29,6 @@ def to_check(cautions: Iterable[CautionLine]) -> str:
         for name, op in asked
     )
     return (
-        "\n# The review asks to stop and check these. Answer each one once it is done: take the # off its line, and off the next.\n"
+        "\n# The review asks to stop and check these. Once one is done, take the # off its line and off `checked:`.\n"
         f"# checked:\n{lines}"
     )

@@ -12,7 +12,7 @@ from setupcheck.starting.kinds import Started
 from setupcheck.starting.layout import quoted_text
 
 _INVENTED = re.compile(
-    r"Invented scenario(?:: every figure is made up to teach, none was measured on a real part|, made up to teach)"
+    r"Invented scenario(?:: every figure is made up to teach, none was measured on a real part|, made up to teach)[.:]? ?(\w?)"
 )
 _CHECKED = re.compile(r"\n# Cautions of the kind \"stop and check\"[^\n]*\nchecked:\n(?:  - [^\n]*\n?)+")
 _SCHEMA = "# yaml-language-server: $schema=../rules/job.schema.json\n"
@@ -51,11 +51,11 @@ def copied(name: str, *, title: str, job: str, file: str, schema: bool = False) 
     from setupcheck.jobfile.reading import read_job_text
 
     text = shipped(f"jobs/{name}.yaml").read_text(encoding="utf-8").removeprefix(_SCHEMA)
-    from_where = f"Made from the example {name}: every figure in it is made up until you replace it"
-    text = _INVENTED.sub(from_where, text, count=1)
+    text = _INVENTED.sub(lambda found: found[1].upper(), text, count=1).replace("# \n", "", 1).replace(" \n", "\n")
     text = re.sub(r"^title: .*$", lambda _: f"title: {quoted_text(title)}", text, count=1, flags=re.M)
     text = re.sub(r"^job: .*$", lambda _: f"job: {quoted_text(job)}", text, count=1, flags=re.M)
-    text = modeline(schema=schema) + _CHECKED.sub("", text).rstrip("\n") + "\n"
+    made_from = f"# Made from the example {name}: every figure in it is made up, none was measured. Replace them all.\n"
+    text = modeline(schema=schema) + made_from + _CHECKED.sub("", text).rstrip("\n") + "\n"
     found = review(read_job_text(text, file))
     text += to_check(found.evaluation.cautions)
     return Started(text, review(read_job_text(text, file)))

@@ -108,7 +108,7 @@ setups:
     hold:
       centre:     {{on: bar, by: three-jaw, at: {u.size(chuck + 5.0)}, \
 grip: {{from: {u.size(chuck)}, to: {u.size(-4.0)}}}, runout: {{device: three-jaw}}}}
-      and_centre: {{on: bar, by: three-jaw, at: {u.size(0.3 * b)}, runout: {{device: three-jaw}}}}    # second plane, rules the lean
+      and_centre: {{on: bar, by: three-jaw, at: {u.size(0.3 * b)}, runout: {{device: three-jaw}}}}    # rules the lean
     cut: {{front: {{}}, bore: {{}}, outside: {{leave_on_diameter: {u.size(1.5)}, state: rough}}}}
   - op: 20          # sawn off, back faced against the front
     machine: lathe-C

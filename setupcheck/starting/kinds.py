@@ -43,7 +43,7 @@ KINDS: dict[str, Kind] = {
     for kind in (
         Kind(
             "worm-wheel",
-            "cut gap by gap on a leaned head, bored true to its register, joined to a spindle",
+            "cut gap by gap on a leaned head, joined to its spindle",
             "Worm wheel",
             "WW-001",
             wheel.questions,

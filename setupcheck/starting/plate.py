@@ -111,7 +111,7 @@ setups:
     hold:
       centre:     {{on: rough, by: three-jaw, at: {u.size(-grip)}, \
 grip: {{from: {u.size(-grip - 2.0)}, to: {u.size(-1.0)}}}, runout: {{device: three-jaw}}}}
-      and_centre: {{on: rough, by: three-jaw, at: {u.size(-2.0)}, runout: {{device: three-jaw}}}}    # second plane, rules the lean
+      and_centre: {{on: rough, by: three-jaw, at: {u.size(-2.0)}, runout: {{device: three-jaw}}}}    # rules the lean
     cut: {{front: {{}}, bore: {{}}, outside: {{}}}}
   - op: 20          # turned round on the outside against the front, back faced
     machine: lathe-E

@@ -59,7 +59,8 @@ parts:
   spindle:
     material: 42CrMo4          # GUESS
     surfaces:
-      bar:          {{kind: cylinder, diameter: {u.size(bar)}, from: {u.size(far - 5.0)}, to: {u.size(seat_end + 1.0)}, made: stock}}
+      bar:          {{kind: cylinder, diameter: {u.size(bar)}, from: {u.size(far - 5.0)}, \
+to: {u.size(seat_end + 1.0)}, made: stock}}
       front_centre: {{kind: centre, at: {u.size(seat_end)}, facing: +z, made: stock}}
       rear_centre:  {{kind: centre, at: {u.size(far)}, facing: -z, made: stock}}
       # GUESS: to be measured, once it is ground; ring and seat are paired by what both measure

@@ -169,10 +169,11 @@ worm:
   pressure_angle: 20 deg       # in the axial section
   profile: ZA                  # GUESS; ZN, ZI, ZK or ZC by how it was cut
   material: 16MnCr5            # GUESS
-  thread_thickness: {u.plus_minus(s.thread, 0.010)}    # GUESS: along the axis at the reference diameter, half the pitch less some play
+  thread_thickness: {u.plus_minus(s.thread, 0.010)}    # GUESS: along the axis, half the pitch less some play
   end_float: {u.error(0.010)}               # GUESS
 # centre distance = half of both reference diameters; its tolerance and the squareness of the axes are GUESS
-mesh: {{wheel: wheel.teeth, centre_distance: {u.plus_minus(s.distance, 0.010)}, shaft_angle_error: 1', housing: grey-iron{serves}}}
+mesh: {{wheel: wheel.teeth, centre_distance: {u.plus_minus(s.distance, 0.010)}, shaft_angle_error: 1', \
+housing: grey-iron{serves}}}
 # The cutter's tip radius has to be larger than the worm's, or the ends of the face bear; the insert's width at pitch height
 # rules the backlash.
 cutters:
@@ -191,7 +192,7 @@ setups:
     hold:
       centre:     {{on: bar, by: three-jaw, at: {u.size(chuck + 5.0)}, \
 grip: {{from: {u.size(chuck)}, to: {u.size(-4.0)}}}, runout: {{device: three-jaw}}}}
-      and_centre: {{on: bar, by: three-jaw, at: {u.size(s.side)}, runout: {{device: three-jaw}}}}    # second plane, rules the lean
+      and_centre: {{on: bar, by: three-jaw, at: {u.size(s.side)}, runout: {{device: three-jaw}}}}    # rules the lean
     cut:
       front:  {{}}
       hub:    {{leave_on_diameter: {u.size(1.0)}}}
@@ -233,7 +234,7 @@ mid_plane: {{found: after-tilt, error: {u.error(0.015)}}}}}
     # depth = 2.2 x module, counted from the throat; the last pass is fine
     cut:    {{teeth: {{cutter: fly, depth_from: {{surface: throat, at_most: {u.error(0.010)}, tool: standing}}, \
 depth: {u.exact(s.depth)}, depth_error: {u.error(0.005)}, passes: {passes(s.depth, u)}}}}}
-  - op: 50          # bored true to the register; write what the dial showed beside it: {{at_most: …, measured: …, uncertainty: …}}
+  - op: 50          # bored true to the register; once read, {{at_most: …, measured: …, uncertainty: …}}
     machine: lathe-A
     looks_at_tool: -z
     hold:
@@ -266,7 +267,8 @@ def _spindle(answers: Answers, figures: Figures, s: Sizes) -> str:
     surfaces:
       journal:  {{kind: cylinder, diameter: {journal}, from: 0, to: {u.size(s.length)}, roughness: Rz 1.6 um}}
       shoulder: {{kind: face, at: 0, facing: +z, diameter: {u.size(shoulder)}}}
-      bearings: {{kind: cylinder, diameter: {u.size(shoulder - u.up(1.0))}, from: {u.size(-u.up(80.0))}, to: {u.size(-u.up(5.0))}}}
+      bearings: {{kind: cylinder, diameter: {u.size(shoulder - u.up(1.0))}, from: {u.size(-u.up(80.0))}, \
+to: {u.size(-u.up(5.0))}}}
     given:      # GUESS: a bought or finished part, as inspected; no setup here makes these
       - {{of: journal, about: bearings, runout: {u.error(0.002)}}}
       - {{of: shoulder, about: bearings, face_runout: {u.error(0.004)}, across: {u.size(u.down(0.9 * shoulder))}}}
