@@ -126,7 +126,8 @@ class _Talk:
             try:
                 return text, read(text)
             except SetupcheckError as wrong:
-                sys.stdout.write("\n".join(wrap(str(wrong), first="  ", rest="  ")) + "\n")
+                told = [line for part in str(wrong).splitlines() for line in wrap(part, first="  ", rest="  ")]
+                sys.stdout.write("\n".join(told) + "\n")
 
 
 def _list(examples: bool) -> None:

@@ -7,6 +7,7 @@ from setupcheck.starting.answers import Answers, Question, Value, in_bore, in_li
 from setupcheck.starting.asking import Ask, head, requirements
 from setupcheck.starting.dividing import division, passes
 from setupcheck.starting.figures import Figures
+from setupcheck.starting.layout import Measure
 
 OPENING = (
     "A spur gear, bored first and then turned and cut on one taper mandrel, so that everything is true to the bore.",
@@ -42,7 +43,7 @@ def questions() -> tuple[Question, ...]:
 
 def _usual_bore(answers: Answers) -> str:
     root = answers.number("module") * (answers.number("teeth") - 2.5)
-    return f"{answers.measure.size(answers.measure.down(min(max(root * 0.36, 3.0), most_bore(answers))))} H7"
+    return f"{answers.measure.exact(answers.measure.bore(min(max(root * 0.36, 3.0), most_bore(answers))))} H7"
 
 
 def most_bore(answers: Answers) -> float:
@@ -91,7 +92,7 @@ parts:
       outside: {{kind: cylinder, diameter: {u.size(outside)}, from: 0, to: {u.size(b)}}}
       # reference circle = module x teeth
       teeth:   {{kind: teeth, count: {z}, on_circle: {u.exact(m * z)}, at: {u.size(b / 2.0)}, width: {u.size(b)}, \
-pressure_angle: 20 deg, module: {u.exact(m)}}}
+pressure_angle: 20 deg, module: {module_text(answers)}}}
 
 # Replace names and figures by those of your shop; axis_runout is how truly the spindle itself turns.
 machines:
@@ -140,6 +141,11 @@ runout: {{at_most: {u.error(0.005)}, device: mandrel-1-far, mark: kept}}}}
     # tooth depth = 2.25 x module
     cut: {{teeth: {{cutter: disc, depth: {u.size(depth)}, depth_from: outside, passes: {passes(depth, u)}}}}}
 {requirements(asks, answers, figures, ", about its bore")}"""
+
+
+def module_text(answers: Answers) -> str:
+    """The module, in mm in every file."""
+    return Measure("mm").exact(answers.number("module")) + ("" if answers.units == "mm" else " mm")
 
 
 def bore_text(answers: Answers) -> str:

@@ -131,7 +131,9 @@ def start(answers: Answers, *, file: str, made_by: str, schema: bool = False) ->
     found: Review | None = None
     for _ in range(ROUNDS):
         found = review(read_job_text(kind.write(answers, figures, made_by), file))
-        figures = settled(found, figures, answers, bore=joint)
+        before, figures = figures, settled(found, figures, answers, bore=joint)
+        if figures == before:
+            break
     cautions = found.evaluation.cautions if found is not None else ()
     text = modeline(schema=schema) + kind.write(answers, figures, made_by) + to_check(cautions)
     return Started(text, review(read_job_text(text, file)))

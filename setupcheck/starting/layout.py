@@ -135,6 +135,11 @@ class Measure:
         away = plain(round(error / self.unit, 3 if self.units == "mm" else 4))
         return f"{self.size(size)} \u00b1{away}"
 
+    def bore(self, size: float) -> float:
+        """A plain bore at or below a size: whole millimetres, fives above 20 mm, eighths of an inch [mm]."""
+        step = 3.175 if self.units == "in" else 5.0 if size >= 20.0 else 1.0
+        return max(math.floor(size / step + 1e-9), 1) * step
+
     def up(self, size: float) -> float:
         """The next half millimetre, or two hundredths of an inch, at or above a size [mm]."""
         step = 0.5 if self.units == "mm" else 0.508

@@ -20,8 +20,8 @@ from setupcheck.starting.answers import (
 from setupcheck.starting.asking import Ask, head, requirements, shrunk, slid
 from setupcheck.starting.dividing import division, passes
 from setupcheck.starting.figures import Figures
-from setupcheck.starting.gear import bore_text
-from setupcheck.starting.layout import Measure, angle_words
+from setupcheck.starting.gear import bore_text, module_text
+from setupcheck.starting.layout import angle_words
 from setupcheck.worm.geometry import lead_angle, outside_diameter, usual_face_width, wheel_sizes, worm_sizes
 
 OPENING = (
@@ -86,7 +86,7 @@ def most_hub(answers: Answers) -> float:
 
 def _usual_bore(answers: Answers) -> str:
     usual = min(max(0.3 * answers.number("module") * answers.number("teeth"), 3.0), most_hub(answers) / 1.6, 400.0)
-    return f"{answers.measure.size(max(answers.measure.down(usual), answers.measure.up(1.0)))} H5"
+    return f"{answers.measure.exact(answers.measure.bore(usual))} H5"
 
 
 def _bore(text: str, answers: Answers) -> Value:
@@ -163,7 +163,7 @@ parts:
 worm:
   starts: {s.starts}
   hand: {hand}
-  axial_module: {f"{u.exact(s.m)}" if answers.units == "mm" else f"{Measure('mm').exact(s.m)} mm"}
+  axial_module: {module_text(answers)}
   reference_diameter: {u.exact(s.d1)}
   tip_diameter: {u.exact(s.tip)}
   pressure_angle: 20 deg       # in the axial section
