@@ -14,7 +14,7 @@ OPENING = (
 PAIRED = 0.00024
 """Interference of ring and seat as paired, share of the bore. Source: our screening choice; the review judges heat and grip."""
 
-LEAST_BORE = 20.0
+LEAST_BORE = 25.0
 """Smallest ring that this plan is for [mm]. Source: our screening choice; smaller ones are pressed on cold."""
 
 

@@ -241,7 +241,7 @@ def test_an_unknown_example_is_told_with_the_nearest_and_all_of_them() -> None:
         ("worm-wheel", {"tightest": "0 um"}, "cannot be kept by any plan. Write a limit above zero, as in 40 um"),
         ("spur-gear", {"bore": "58 H7"}, "a bore of 58 mm leaves no wall under 40 teeth of module 1.5 mm. Write"),
         ("coupling-hub", {"outside": "82"}, "an outside of 82 mm leaves no hub round the bore. Write 104 mm or more"),
-        ("bearing-ring", {"bore": "12"}, "'12' is outside what this part can have, 20 mm to 250 mm"),
+        ("bearing-ring", {"bore": "12"}, "'12' is outside what this part can have, 25 mm to 250 mm"),
         ("bearing-ring", {"outside": "52"}, "is outside what this part can have, 54 mm to 90 mm"),
         ("index-plate", {"hole": "20"}, "the holes would run into each other. Write 1 mm to 14.137 mm"),
         ("index-plate", {"outside": "121"}, "the holes would break out of the rim. Write 127.2 mm to 1000 mm"),
