@@ -28,7 +28,7 @@ def as_started(found: Review, file: str, text: str) -> str:
     cautions = sum(c.severity == "stop-and-check" and not c.answered for c in found.evaluation.cautions)
     typical = len({name for finding in found.evaluation.findings for name in finding.rests_on})
     replace = [f"the figures beside GUESS ({guesses} lines)"] if guesses else ["every figure: all are made up"]
-    replace += [f"the {typical} typical values that stand in"] if typical else []
+    replace += [f"the typical value{'s' if typical > 1 else ''} in use ({typical})"] if typical else []
     lines += wrap(f"Replace {', and '.join(replace)}.", first="  ", rest="  ")
     if cautions:
         lines += wrap(

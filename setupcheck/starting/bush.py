@@ -5,7 +5,7 @@ from __future__ import annotations
 from setupcheck.errors import SetupcheckError
 from setupcheck.starting.answers import Answers, Question, Value, in_bore, in_limit, in_size, in_torque
 from setupcheck.starting.asking import Ask, head, requirements
-from setupcheck.starting.figures import Figures
+from setupcheck.starting.figures import PAIRED, Figures
 from setupcheck.starting.gear import bore_text
 
 OPENING = (
@@ -67,9 +67,10 @@ parts:
     material: C45              # GUESS; the joint's strength rests on it
     surfaces:
       boss:  {{kind: cylinder, diameter: {u.size(boss)}, from: 0, to: {u.size(length)}, made: stock}}
-      # the eye as measured, or its class as in {u.size(out)} H7: then the bush needs a narrower size of its own
-      eye:   {{kind: bore, diameter: {{nominal: {u.exact(out)}, measured: {u.exact(out)}, uncertainty: {u.error(0.002)}}}, \
-from: 0, to: {u.size(length)}, roughness: Rz 4 um}}    # GUESS: to be measured
+      # The eye is measured and the bush turned to suit it. Until then this narrow span stands for it, GUESS; afterwards write
+      # {{nominal: {u.exact(out)}, measured: …, uncertainty: {u.error(0.002)}}}, and the bush's own size to suit.
+      eye:   {{kind: bore, diameter: {u.plus_minus(out, PAIRED)}, \
+from: 0, to: {u.size(length)}, roughness: Rz 4 um}}
       side:  {{kind: face, at: 0, facing: -z, diameter: {u.size(boss)}}}
       front: {{kind: face, at: {u.size(length)}, facing: +z, diameter: {u.size(boss)}}}
     given:      # GUESS: a finished lever, as inspected; no setup here makes these
@@ -101,7 +102,7 @@ grip: {{from: {u.size(chuck)}, to: {u.size(chuck + u.up(40.0))}}}, runout: {{dev
       and_centre: {{on: bar, by: three-jaw, at: {u.size(chuck + u.up(35.0))}, runout: {{device: three-jaw}}}}    # rules the lean
     cut:
       out:   {{}}
-      hole:  {{leave_on_diameter: {u.size(0.5)}, state: rough}}
+      hole:  {{leave_on_diameter: {u.size(u.up(0.5))}, state: rough}}
       front: {{error: {u.error(0.020)}}}
       back:  {{error: {u.error(0.050)}, removes: [bar]}}
   - op: 20          # dry and clean: a film of oil halves the grip

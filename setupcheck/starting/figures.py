@@ -26,7 +26,12 @@ HEAT_ERROR = 10.0
 HEAT_SPARE = 25.0
 """Heat planned above what the joint needs and the oven may lack [K]. Source: our choice."""
 LEAST_BACKLASH = 0.015
-"""Backlash kept at the worst [mm]. Source: our choice, half as much again as a wheel of this size usually leaves to heat."""
+"""Backlash kept at the worst [mm]. Source: our choice, so that a first measured value does not make the pair bind at once."""
+PAIRED = 0.002
+"""Either way of a size that is to be measured and paired, until it is [mm]. Source: our choice, what a good micrometer tells."""
+OWN_LIMITS = 0.002
+"""Half of the tolerance of a journal with limits of its own, over the cube root of its size [mm]. Source: our choice, between
+IT5 and IT6."""
 
 
 @record
@@ -78,7 +83,8 @@ def _journal(found: Review, answers: Answers, bore: str) -> str | None:
     low, high = told(found, "fit.window_low"), told(found, "fit.window_high")
     if low is None or high is None:
         return None
-    nominal, (least, most) = answers.number(bore), deviations(answers.size(bore))
+    nominal, outer = answers.number(bore), answers.size(bore)
+    least, most = deviations(outer) if outer.fit or outer.lower is not None else (-PAIRED, PAIRED)
     smallest, largest = most + low * 1.08 + 0.0005, least + high * 0.94
     for name in CLASSES:
         try:
@@ -88,7 +94,7 @@ def _journal(found: Review, answers: Answers, bore: str) -> str | None:
         if shaft.lower >= smallest and shaft.upper <= largest:
             return f"{answers.measure.exact(nominal)} {name}"
     middle, half = (smallest + largest) / 2.0, max((largest - smallest) / 2.0, 0.001)
-    half = min(0.6 * half, 0.25e-3 * math.cbrt(nominal) * 8.0)
+    half = min(0.6 * half, OWN_LIMITS * math.cbrt(nominal))
     return answers.measure.with_limits(nominal, middle - half, middle + half)
 
 

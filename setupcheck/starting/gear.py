@@ -108,9 +108,9 @@ setups:
     looks_at_tool: +z
     hold:
       centre:     {{on: bar, by: three-jaw, at: {u.size(chuck + 5.0)}, \
-grip: {{from: {u.size(chuck)}, to: {u.size(-4.0)}}}, runout: {{device: three-jaw}}}}
+grip: {{from: {u.size(chuck)}, to: {u.size(-u.up(4.0))}}}, runout: {{device: three-jaw}}}}
       and_centre: {{on: bar, by: three-jaw, at: {u.size(0.3 * b)}, runout: {{device: three-jaw}}}}    # rules the lean
-    cut: {{front: {{}}, bore: {{}}, outside: {{leave_on_diameter: {u.size(1.5)}, state: rough}}}}
+    cut: {{front: {{}}, bore: {{}}, outside: {{leave_on_diameter: {u.size(u.up(1.5))}, state: rough}}}}
   - op: 20          # sawn off, back faced against the front
     machine: lathe-C
     looks_at_tool: -z

@@ -80,7 +80,8 @@ parts:
   hub:
     material: C45              # GUESS; the joint's strength and heat rest on it
     surfaces:
-      bar:      {{kind: cylinder, diameter: {u.size(bar)}, from: {u.size(-5.0)}, to: {u.size(length + 4.0 + stub)}, made: stock}}
+      bar:      {{kind: cylinder, diameter: {u.size(bar)}, from: {u.size(-u.up(5.0))}, \
+to: {u.size(length + u.up(4.0) + stub)}, made: stock}}
       front:    {{kind: face, at: {u.size(length)}, facing: +z, diameter: {u.size(rim)}}}
       rim:      {{kind: cylinder, diameter: {u.size(rim)}, from: {u.size(step)}, to: {u.size(length)}}}
       nose:     {{kind: cylinder, diameter: {u.size(nose)}, from: 0, to: {u.size(step)}}}    # the grip of op 20 and 30
@@ -108,12 +109,12 @@ setups:
     looks_at_tool: -z
     hold:
       centre:     {{on: bar, by: three-jaw, at: {u.size(length + stub)}, \
-grip: {{from: {u.size(length + 4.0)}, to: {u.size(length + 4.0 + stub)}}}, runout: {{device: three-jaw}}}}
-      and_centre: {{on: bar, by: three-jaw, at: {u.size(length + 6.0)}, runout: {{device: three-jaw}}}}    # rules the lean
+grip: {{from: {u.size(length + u.up(4.0))}, to: {u.size(length + u.up(4.0) + stub)}}}, runout: {{device: three-jaw}}}}
+      and_centre: {{on: bar, by: three-jaw, at: {u.size(length + u.up(6.0))}, runout: {{device: three-jaw}}}}    # rules the lean
     cut:
       nose: {{}}
-      back: {{leave: {u.size(0.5)}, error: {u.error(0.10)}}}
-      bore: {{leave_on_diameter: {u.size(2.0)}, state: rough}}
+      back: {{leave: {u.size(u.up(0.5))}, error: {u.error(0.10)}}}
+      bore: {{leave_on_diameter: {u.size(u.up(2.0))}, state: rough}}
   - op: 20          # sawn off, turned round on the nose, the rest roughed so that op 30 only finishes
     machine: lathe-G
     looks_at_tool: +z
@@ -122,9 +123,9 @@ grip: {{from: {u.size(length + 4.0)}, to: {u.size(length + 4.0 + stub)}}}, runou
       square: {{on: back, by: jaws, face_runout: {{device: jaws}}, across: {u.size(u.down(0.9 * nose))}}}
       stop:   {{on: back, error: {u.error(0.050)}}}    # GUESS
     cut:
-      rim:      {{leave_on_diameter: {u.size(1.0)}}}
-      front:    {{leave: {u.size(0.5)}, error: {u.error(0.10)}, removes: [bar]}}
-      bore:     {{leave_on_diameter: {u.size(1.0)}, state: rough}}
+      rim:      {{leave_on_diameter: {u.size(u.up(1.0))}}}
+      front:    {{leave: {u.size(u.up(0.5))}, error: {u.error(0.10)}, removes: [bar]}}
+      bore:     {{leave_on_diameter: {u.size(u.up(1.0))}, state: rough}}
   - op: 30          # everything that has to run true, in one holding: the chuck's own error reaches none of it
     machine: lathe-G
     looks_at_tool: +z
@@ -156,9 +157,7 @@ def _asks(answers: Answers, front: str, seat_face: str) -> tuple[Ask, ...]:
     asks = [
         Ask("what: run-out, of: hub.rim, about: shaft.bearings"),
         Ask(f"what: face-run-out, of: hub.front, about: shaft.bearings, across: {front}"),
-        Ask(
-            "what: length, of: hub.front, about: shaft.shoulder", "between", "how far the front stands off the shoulder"
-        ),
+        Ask("what: length, of: hub.front, about: shaft.shoulder", "between"),
         Ask(f"what: squareness, of: hub.back, about: shaft.shoulder, across: {seat_face}"),
         Ask("what: allowance, of: hub.bore@30", "at_least", "stock left for the finishing cut at its thinnest"),
     ]

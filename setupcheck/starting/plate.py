@@ -110,8 +110,8 @@ setups:
     looks_at_tool: +z
     hold:
       centre:     {{on: rough, by: three-jaw, at: {u.size(-grip)}, \
-grip: {{from: {u.size(-grip - 2.0)}, to: {u.size(-1.0)}}}, runout: {{device: three-jaw}}}}
-      and_centre: {{on: rough, by: three-jaw, at: {u.size(-2.0)}, runout: {{device: three-jaw}}}}    # rules the lean
+grip: {{from: {u.size(-grip - 2.0)}, to: {u.size(-u.up(1.0))}}}, runout: {{device: three-jaw}}}}
+      and_centre: {{on: rough, by: three-jaw, at: {u.size(-u.up(2.0))}, runout: {{device: three-jaw}}}}    # rules the lean
     cut: {{front: {{}}, bore: {{}}, outside: {{}}}}
   - op: 20          # turned round on the outside against the front, back faced
     machine: lathe-E

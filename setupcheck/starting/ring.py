@@ -17,6 +17,9 @@ PAIRED = 0.00024
 LEAST_BORE = 25.0
 """Smallest ring that this plan is for [mm]. Source: our screening choice; smaller ones are pressed on cold."""
 
+SPREAD = 0.001
+"""Either way of a size that is to be measured and paired, until it is [mm]. Source: our choice, what a comparator tells."""
+
 
 def questions() -> tuple[Question, ...]:
     """What is asked of a bearing ring and its seat."""
@@ -63,21 +66,23 @@ parts:
 to: {u.size(seat_end + 1.0)}, made: stock}}
       front_centre: {{kind: centre, at: {u.size(seat_end)}, facing: +z, made: stock}}
       rear_centre:  {{kind: centre, at: {u.size(far)}, facing: -z, made: stock}}
-      # GUESS: to be measured, once it is ground; ring and seat are paired by what both measure
-      seat:         {{kind: cylinder, diameter: {{nominal: {u.exact(d)}, measured: {u.exact(d + 0.7 * paired)}, \
-uncertainty: {u.error(0.001)}}}, from: 0, to: {u.size(seat_end)}, roughness: Rz 1.6 um}}
+      # Ring and seat are measured and paired. Until then narrow spans stand for both, GUESS; afterwards write
+      # {{nominal: {u.exact(d)}, measured: …, uncertainty: {u.error(SPREAD)}}}.
+      seat:         {{kind: cylinder, diameter: {u.with_limits(d, 0.7 * paired - SPREAD, 0.7 * paired + SPREAD)}, \
+from: 0, to: {u.size(seat_end)}, roughness: Rz 1.6 um}}
       shoulder:     {{kind: face, at: 0, facing: +z, diameter: {u.size(shoulder)}}}
       body:         {{kind: cylinder, diameter: {u.size(body)}, from: {u.size(back)}, to: 0}}
       rear:         {{kind: cylinder, diameter: {u.size(rear)}, from: {u.size(far)}, to: {u.size(back)}}}
     given:      # GUESS: the bar comes with both centres drilled by one centring machine
-      - {{of: rear_centre, about: front_centre, runout: {u.error(0.10)}, face_runout: {u.error(0.050)}, across: {u.size(8.0)}}}
+      - {{of: rear_centre, about: front_centre, runout: {u.error(0.10)}, face_runout: {u.error(0.050)}, \
+across: {u.size(u.up(8.0))}}}
   ring:
     material: 100Cr6
     # GUESS: ask its maker what heat the ring takes; many allow less, and none with seals or grease in it
     properties: {{expansion: 12.0 um/m/K, heat_cap: 120 degC, yield_strength: 1400 MPa}}
     surfaces:
-      bore:    {{kind: bore, diameter: {{nominal: {u.exact(d)}, measured: {u.exact(d - 0.3 * paired)}, \
-uncertainty: {u.error(0.001)}}}, from: 0, to: {u.size(b)}, roughness: Rz 1.6 um}}    # GUESS: to be measured
+      bore:    {{kind: bore, diameter: {u.with_limits(d, -0.3 * paired - SPREAD, -0.3 * paired + SPREAD)}, \
+from: 0, to: {u.size(b)}, roughness: Rz 1.6 um}}    # GUESS
       raceway: {{kind: cylinder, diameter: {u.size(race)}, from: {u.size(0.15 * b)}, to: {u.size(0.85 * b)}}}
       land:    {{kind: cylinder, diameter: {u.size(lip)}, from: 0, to: {u.size(0.15 * b)}}}
       lip:     {{kind: cylinder, diameter: {u.size(lip)}, from: {u.size(0.85 * b)}, to: {u.size(b)}}}
@@ -103,7 +108,7 @@ setups:
     hold:
       centre:     {{on: front_centre, by: centres, runout: {{device: centres}}}}
       and_centre: {{on: rear_centre, by: centres, runout: {{device: centres}}}}
-      stop:       {{on: rear_centre, error: {u.error(0.050)}, radius: {u.size(4.0)}}}
+      stop:       {{on: rear_centre, error: {u.error(0.050)}, radius: {u.size(u.up(4.0))}}}
     cut:
       body:     {{}}
       seat:     {{leave_on_diameter: {u.size(0.3)}}}
@@ -116,7 +121,7 @@ setups:
     hold:
       centre:     {{on: front_centre, by: centres, runout: {{device: centres}}}}
       and_centre: {{on: rear_centre, by: centres, runout: {{device: centres}}}}
-      stop:       {{on: rear_centre, error: {u.error(0.020)}, radius: {u.size(4.0)}}}
+      stop:       {{on: rear_centre, error: {u.error(0.020)}, radius: {u.size(u.up(4.0))}}}
     cut:
       seat:     {{}}
       shoulder: {{error: {u.error(0.010)}}}

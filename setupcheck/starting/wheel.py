@@ -191,14 +191,14 @@ setups:
     looks_at_tool: +z
     hold:
       centre:     {{on: bar, by: three-jaw, at: {u.size(chuck + 5.0)}, \
-grip: {{from: {u.size(chuck)}, to: {u.size(-4.0)}}}, runout: {{device: three-jaw}}}}
+grip: {{from: {u.size(chuck)}, to: {u.size(-u.up(4.0))}}}, runout: {{device: three-jaw}}}}
       and_centre: {{on: bar, by: three-jaw, at: {u.size(s.side)}, runout: {{device: three-jaw}}}}    # rules the lean
     cut:
       front:  {{}}
-      hub:    {{leave_on_diameter: {u.size(1.0)}}}
+      hub:    {{leave_on_diameter: {u.size(u.up(1.0))}}}
       seat:   {{leave: {u.size(0.6)}, error: {u.error(0.050)}}}
       rim:    {{}}
-      throat: {{leave_on_diameter: {u.size(1.0)}}}
+      throat: {{leave_on_diameter: {u.size(u.up(1.0))}}}
   - op: 20          # sawn off the bar, turned round, back faced and bored roughly
     machine: lathe-A
     looks_at_tool: -z
@@ -207,7 +207,7 @@ grip: {{from: {u.size(chuck)}, to: {u.size(-4.0)}}}, runout: {{device: three-jaw
       square: {{on: seat, by: jaws, face_runout: {{device: jaws}}, across: {across}}}
       stop:   {{on: seat, error: {u.error(0.020)}}}    # GUESS
     cut:
-      back: {{leave: {u.size(0.5)}, error: {u.error(0.050)}, removes: [bar]}}
+      back: {{leave: {u.size(u.up(0.5))}, error: {u.error(0.050)}, removes: [bar]}}
       bore: {{leave_on_diameter: {u.size(0.8)}, state: rough}}
   - op: 30          # the register: hub and seat finished in one holding, so they are true to each other
     machine: lathe-A
