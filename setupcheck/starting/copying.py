@@ -57,8 +57,7 @@ def copied(name: str, *, title: str, job: str, file: str, schema: bool = False) 
     made_from = f"# Made from the example {name}: every figure in it is made up, none was measured. Replace them all.\n"
     text = modeline(schema=schema) + made_from + _CHECKED.sub("", text).rstrip("\n") + "\n"
     found = review(read_job_text(text, file))
-    text += to_check(found.evaluation.cautions)
-    return Started(text, review(read_job_text(text, file)))
+    return Started(text + to_check(found.evaluation.cautions), found)  # comments below change no figure
 
 
 def _said(text: str, key: str) -> str:

@@ -214,6 +214,7 @@ def test_an_example_is_copied_with_its_comments_and_reviews_at_once(name: str) -
     assert ('A: "b" # c', "77") == (job.title, job.job)
     assert f"# Made from the example {name}: every figure in it is made up" in found.text
     assert "Invented scenario" not in found.text
+    assert job == read_job_text(found.text, "job.yaml").job
     assert "invented initials" not in found.text
     assert () == job.checked
     assert found.text.count("#") > 10
