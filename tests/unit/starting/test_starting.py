@@ -17,7 +17,7 @@ from setupcheck.shipped import examples
 from setupcheck.starting.answers import Answers, read_answer
 from setupcheck.starting.copying import copied, known_example, title_and_job
 from setupcheck.starting.dividing import division
-from setupcheck.starting.kinds import KINDS, Started, kind_of, start
+from setupcheck.starting.kinds import KINDS, Started, command_of, kind_of, start
 from setupcheck.starting.layout import LONGEST_TEXT, Measure, checked_text, nice, quoted_text
 
 SLOW = settings(max_examples=3, deadline=None, suppress_health_check=list(HealthCheck), derandomize=True)
@@ -286,6 +286,11 @@ def test_an_unknown_kind_is_told_with_the_nearest_and_all_of_them() -> None:
         kind_of("wormwheel")
     assert "'wormwheel' is no kind of part here. Did you mean worm-wheel? There are:" in str(wrong.value)
     assert all(len(line) <= 80 for line in str(wrong.value).splitlines())
+
+
+def test_an_answer_with_line_ends_stays_inside_its_comment() -> None:
+    made_by = command_of(KINDS["bushing"], "mm", {"bore": "30\nH7\r# x\u2028y"})
+    assert "setupcheck new FILE --kind bushing --units mm --bore '30 H7 # x y' --yes" == made_by
 
 
 # -- how it is written -----------------------------------------------------------------------------------------------
