@@ -1,4 +1,30 @@
-"""From a job file to its review: read, walk the route, judge every number by the rule book. The public way in."""
+"""From a job file to its review: read, walk the route, judge every number by the rule book. The public way in.
+
+>>> from setupcheck.shipped import shipped
+>>> found = review(shipped("jobs") / "index-plate.yaml")
+>>> found.verdict, found.evaluation.counts["fail"], found.evaluation.counts["open"]
+('pass', 0, 0)
+
+A finding says which rule judged what, where and how far it is from its limit:
+
+>>> tight = vary(found, {"setups.30.hold.centre.runout": "3 thou"}).after
+>>> tight.verdict, sorted({finding.rule for finding in tight.evaluation.findings if finding.verdict == "fail"})
+('fail', ['STACK-001'])
+
+A requirement stands under its own name; its worst case has two ends [mm]:
+
+>>> name = next(key for key, one in tight.results.items() if one.margin is not None and one.margin < 0.0)
+>>> name
+'position.plate-holes.plate-bore'
+>>> f"{tight.results[name].combined.worst.high:.4f} mm, allowed {tight.results[name].stack.high:.4f} mm"
+'0.1194 mm, allowed 0.0508 mm'
+
+Gates are what the dial may show at each hold, with all else as planned [mm]:
+
+>>> gate = next(g for g in found.gates if g.op == 30)
+>>> gate.on, gate.reading > gate.planned
+('bore', True)
+"""
 
 from __future__ import annotations
 
@@ -133,7 +159,7 @@ class Varied:
 
 def vary(
     job: LoadedJob | Review | str | Path,
-    changes: Sequence[Change],
+    changes: Sequence[Change] | Mapping[str, str | int | float],
     *,
     house: str | Path | None = None,
     on: str | None = None,
@@ -141,12 +167,15 @@ def vary(
 ) -> Varied:
     """Judge a job as it stands and with entries replaced or added, all at once. The file is not written to.
 
+    changes  as records, or as a mapping of path to value in the job file's notation, {"setups.30.hold.stop.error": "20 um"}
     job  a Review has been made with the same house limits, day and record: it is not made again
     Random draws are named after their causes, so that nothing moves which the changes do not reach.
     Raises: JobError for the file; JobError for the changes, each problem saying so; RuleBookError.
     """
-    from setupcheck.jobfile.changing import changed, from_set  # no review needs it
+    from setupcheck.jobfile.changing import changed, changes_of, from_set  # no review needs it
 
+    if isinstance(changes, Mapping):
+        changes = changes_of(changes)
     before = job if isinstance(job, Review) else review(job, house=house, on=on, devices=devices)
     with from_set(changes):  # also what shows only along the route
         after = review(changed(before.loaded, changes), house=house, on=on, devices=devices)

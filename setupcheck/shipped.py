@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from pathlib import Path
 
-from setupcheck.errors import SetupcheckError
+from setupcheck.errors import SetupcheckError, printable
 
 
 def shipped(name: str) -> Path:
@@ -20,3 +20,25 @@ def shipped(name: str) -> Path:
     if (checkout / "pyproject.toml").is_file() and (checkout / name).exists():
         return checkout / name
     raise SetupcheckError(f"this installation lacks {name}. Install setupcheck again")
+
+
+def examples() -> tuple[str, ...]:
+    """Names of the shipped jobs, in alphabetical order.
+
+    >>> examples()[:2]
+    ('bearing-ring-seat', 'coupling-hub')
+    """
+    return tuple(sorted(path.stem for path in shipped("jobs").glob("*.yaml")))
+
+
+def example(name: str) -> Path:
+    """The file of a shipped job by its name, without `.yaml`.
+
+    Raises: SetupcheckError with the names there are.
+
+    >>> example("index-plate").name
+    'index-plate.yaml'
+    """
+    if name not in examples():
+        raise SetupcheckError(f"there is no shipped job '{printable(name[:60])}'. There: {', '.join(examples())}")
+    return shipped(f"jobs/{name}.yaml")

@@ -22,6 +22,7 @@ from setupcheck.cli import (  # noqa: E402
     contact,
     index,
     insert,
+    new,
     readings,
     record,
     review,
@@ -43,6 +44,7 @@ app = typer.Typer(
     epilog="Exit: 0 pass, 1 warn or open, 2 wrong use or unreadable job, 3 fail.",
 )
 app.command("review")(review.command)
+app.command("new", cls=new.Command)(new.command)
 app.command("working")(working.command)
 app.command("contact")(contact.command)
 app.command("insert")(insert.command)

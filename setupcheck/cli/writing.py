@@ -42,6 +42,62 @@ def write_whole(path: Path, text: str, *, force: bool) -> None:
                 beside.unlink(missing_ok=True)
 
 
+def refuse_new(path: Path) -> None:
+    """Refuses a place where a new file cannot be written. Nothing is ever replaced there, not even a link that leads nowhere."""
+    shown = printable(str(path))
+    try:
+        if path.is_dir():
+            raise SetupcheckError(
+                f"{shown} is a folder. Write the name of a file in it, as in {path.name or '.'}/job.yaml"
+            )
+        if os.path.lexists(path):
+            raise SetupcheckError(_already(shown))
+        if not path.parent.is_dir():
+            raise SetupcheckError(f"{shown}: there is no folder {printable(str(path.parent))}. Make it first")
+    except OSError as why:
+        raise SetupcheckError(f"{shown} cannot be written: {why.strerror or why}. Write another name") from None
+
+
+def write_new(path: Path, text: str) -> None:
+    """A file that was not there before, whole: it is written beside its place and then linked there, which fails where
+    somebody has put something meanwhile."""
+    shown = printable(str(path))
+    beside: Path | None = None
+    try:
+        handle, name = tempfile.mkstemp(dir=path.parent, prefix=".setupcheck.", suffix=".part")
+        beside = Path(name)
+        with os.fdopen(handle, "w", encoding="utf-8", newline="\n") as file:
+            file.write(text)
+        beside.chmod(0o666 & ~_umask())
+        _link(beside, path, text)
+    except FileExistsError:
+        raise SetupcheckError(_already(shown)) from None
+    except OSError as why:
+        raise SetupcheckError(f"{shown} cannot be written: {why.strerror or why}") from None
+    finally:
+        if beside is not None:
+            with contextlib.suppress(OSError):
+                beside.unlink(missing_ok=True)
+
+
+def _link(beside: Path, path: Path, text: str) -> None:
+    """Puts a whole file in its place.
+
+    Raises: FileExistsError where something is there.
+    """
+    try:
+        os.link(beside, path)
+    except FileExistsError:
+        raise
+    except OSError:  # a file system without links: made only if nothing is there
+        with path.open("x", encoding="utf-8", newline="\n") as file:
+            file.write(text)
+
+
+def _already(shown: str) -> str:
+    return f"{shown} is already there and stays as it is. Write another name"
+
+
 def _umask() -> int:
     """What new files of this process may not have."""
     mask = os.umask(0)

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterator, Sequence
+from collections.abc import Iterator, Mapping, Sequence
 from contextlib import contextmanager
 from dataclasses import replace
 
@@ -12,7 +12,7 @@ from setupcheck.errors import JobError, Problem, SetupcheckError, printable
 from setupcheck.jobfile.models import Deviation, Dimension
 from setupcheck.jobfile.reading import LoadedJob, Loc, read_tree
 from setupcheck.jobfile.setups import Through, Touched
-from setupcheck.notation import nearest, quoted
+from setupcheck.notation import nearest, plain, quoted
 from setupcheck.record import record
 from setupcheck.yamlfile import Data, Node, Place, Tree, parse
 
@@ -65,6 +65,29 @@ def read_change(text: str) -> Change:
             "Write one line, as in {at_most: 10 um, device: four-jaw}"
         )
     return Change(key, value)
+
+
+def changes_of(entries: Mapping[str, str | int | float]) -> tuple[Change, ...]:
+    """Changes written as a mapping of path to value; a bare number is one of the file's own units, as it is there.
+
+    Raises: SetupcheckError for a key or value that is no text or number, or as `read_change`.
+
+    >>> changes_of({"setups.30.hold.centre.clearance": "20 um", "parts.hub.surfaces.bore.to": 26})[1]
+    Change(key='parts.hub.surfaces.bore.to', value='26')
+    """
+    found = []
+    for key, value in entries.items():
+        if not isinstance(key, str) or not isinstance(value, str | int | float) or isinstance(value, bool):
+            raise SetupcheckError(
+                f"{quoted(str(key))}: {quoted(str(value))} is no text or number. "
+                "Write path and value as text, as in {'setups.30.hold.centre.clearance': '20 um'}"
+            )
+        if not key.strip() or "=" in key:
+            raise SetupcheckError(
+                f"{quoted(key)} is no path of the job file. Write it as in setups.30.hold.centre.clearance"
+            )
+        found.append(read_change(f"{key}={value if isinstance(value, str) else plain(value)}"))
+    return tuple(found)
 
 
 def changed(loaded: LoadedJob, changes: Sequence[Change]) -> LoadedJob:

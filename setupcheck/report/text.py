@@ -70,12 +70,17 @@ def counts(found: Review) -> str:
     return ", ".join(f"{numbers[v]} {v}" for v in ("pass", "warn", "fail", "open", "waived") if v in VERDICTS)
 
 
+def verdict_lines(found: Review) -> list[str]:
+    """The verdict with its counts, and how far it reaches."""
+    limited = " of what this version computes" if found.verdict == "pass" and uncomputed(found.loaded) else ""
+    return wrap(f"{found.verdict.upper()}{limited}   {counts(found)}", rest="      ")
+
+
 def _head(found: Review) -> Iterator[str]:
     job = found.loaded.job
     name = f"{clean(job.job)}: {clean(job.title)}" if job.job else clean(job.title)
     yield from wrap(name)
-    limited = " of what this version computes" if found.verdict == "pass" and uncomputed(found.loaded) else ""
-    yield from wrap(f"{found.verdict.upper()}{limited}   {counts(found)}", rest="      ")
+    yield from verdict_lines(found)
     unanswered = [c for c in found.evaluation.cautions if c.severity == "stop-and-check" and not c.answered]
     if unanswered and found.evaluation.counts["fail"] == 0:
         yield from wrap(

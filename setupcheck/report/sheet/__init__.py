@@ -7,6 +7,7 @@ from pathlib import Path
 from typing import TYPE_CHECKING
 
 from setupcheck.report.sheet.checks import OUTSIDE
+from setupcheck.report.sheet.inline import inline
 from setupcheck.report.sheet.pages import sheet_of
 
 if TYPE_CHECKING:
@@ -32,5 +33,5 @@ def _template() -> Template:
 
     here = FileSystemLoader(Path(__file__).parent)
     made = Environment(loader=here, autoescape=True, undefined=StrictUndefined, trim_blocks=True, lstrip_blocks=True)
-    made.filters["drawn"] = Markup
+    made.filters["drawn"] = lambda drawing: Markup(inline(drawing))
     return made.get_template("sheet.html")
