@@ -279,7 +279,7 @@ def lengths_as_data(found: Review) -> list[dict[str, object]]:
             "by_low": g.by_low,
             "by_high": g.by_high,
             "requirements": {one.by: [told(g, one.low), told(g, one.high)] for one in g.limits},
-            "planned": told(g, g.planned),
+            "planned": told(g, g.planned) if g.planned else None,
             "measured": told(g, g.measured),
         }
         for g in lengths_of(found, everything=True)
