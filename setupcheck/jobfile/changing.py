@@ -170,8 +170,8 @@ def _way(loaded: LoadedJob, change: Change) -> Loc:
                 raise _refused(loaded, change, place, f"{around} has no such entry", _entries(node, around))
         elif node is None and last and isinstance(step, str):
             pass  # `bore:` with nothing behind it takes its first key
-        elif isinstance(step, str) and (plain := _as_map(stands)):
-            node = plain.get(step)
+        elif isinstance(step, str) and (short := _as_map(stands)):
+            node = short.get(step)
         else:
             said = f"{around} has no keys inside: it says {quoted(node) if node is not None else 'nothing'}"
             raise _refused(loaded, change, place, said, f"Set it as a whole: --set '{around}={{{step}: …}}'")
@@ -190,8 +190,8 @@ def _opened(loaded: LoadedJob, tree: Tree, loc: Loc) -> Tree:
         elif isinstance(node, list) and isinstance(step, int) and step < len(node):
             node = node[step]
         else:
-            plain = isinstance(node, str | int | float)
-            return _put(tree, loc[:at], _as_map(record)) if plain else tree
+            scalar = isinstance(node, str | int | float)
+            return _put(tree, loc[:at], _as_map(record)) if scalar else tree
         record = _inner(record, step)
     return tree
 

@@ -62,7 +62,7 @@ def bands_of(found: Review, gate: Gate) -> tuple[Band, ...]:
     """Larger readings that pass near a direction; none for a gate that is far from any limit."""
     from setupcheck.quantities.gate_bands import bands
 
-    return () if _is_idle(gate) else bands(found.floor, found.results, gate)
+    return () if is_idle(gate) else bands(found.floor, found.results, gate)
 
 
 # -- dial readings -----------------------------------------------------------------------------------------------------
@@ -78,19 +78,19 @@ def _dials(found: Review, gates: Sequence[Gate], everything: bool) -> Iterator[s
         title = titles.get(gate.by, gate.by)
         if gate.reading is not None and gate.reading <= 0.0:
             lost.setdefault(title, []).append(dial_in_words(gate))
-        elif not _is_idle(gate):
-            text = _gate(gate, title, inches=inches) + _near(bands_of(found, gate), gate, inches=inches)
+        elif not is_idle(gate):
+            text = _gate(gate, title, inches=inches) + near_in_words(bands_of(found, gate), gate, inches=inches)
             if everything:
                 text += _others(gate.limits, gate.by, titles, gate.indicator, inches=inches)
             yield from wrap(text, first="  ", rest="      ")
     for title, dials in lost.items():
         yield from wrap(f"no reading alone brings {title} inside: {'; '.join(dials)}", first="  ", rest="      ")
-    idle = [dial_in_words(gate) for gate in gates if _is_idle(gate)]
+    idle = [dial_in_words(gate) for gate in gates if is_idle(gate)]
     if idle:
         yield from wrap(f"not critical: {'; '.join(idle)}", first="  ", rest="      ")
 
 
-def _is_idle(gate: Gate) -> bool:
+def is_idle(gate: Gate) -> bool:
     """No requirement looks at this reading, or only from far away: a number would say nothing."""
     return gate.least <= 0.0 and (gate.reading is None or gate.reading > NOT_CRITICAL * gate.planned)
 
@@ -119,7 +119,7 @@ def _gate(gate: Gate, by: str, *, inches: bool) -> str:
     return text + ("; this high spot takes away from another" if gate.least > 0.0 else "")
 
 
-def _near(bands: Sequence[Band], gate: Gate, *, inches: bool) -> str:
+def near_in_words(bands: Sequence[Band], gate: Gate, *, inches: bool) -> str:
     """`; up to 7.4 um if it is high within 45 deg of tooth 32, up to 8.1 um within 20 deg`, largest last; each step once."""
     shown = on_the_dial(gate.reading or 0.0, inches=inches, step=gate.indicator)
     parts: list[str] = []
@@ -156,16 +156,16 @@ def _lengths(found: Review, gates: Sequence[LengthGate], everything: bool) -> It
     for gate in gates:
         if gate.lost:
             lost.setdefault(titles.get(gate.by_low, gate.by_low), []).append(gate.words)
-        elif not _is_far(gate):
+        elif not is_far(gate):
             yield from wrap(_length(gate, titles, everything, inches=inches), first="  ", rest="      ")
     for title, words in lost.items():
         yield from wrap(f"no length alone brings {title} inside: {'; '.join(words)}", first="  ", rest="      ")
-    idle = [gate.words for gate in gates if not gate.lost and _is_far(gate)]
+    idle = [gate.words for gate in gates if not gate.lost and is_far(gate)]
     if idle:
         yield from wrap(f"not critical: {'; '.join(idle)}", first="  ", rest="      ")
 
 
-def _is_far(gate: LengthGate) -> bool:
+def is_far(gate: LengthGate) -> bool:
     about = gate.planned if gate.is_size else 0.0
     return min(gate.high - about, about - gate.low) > NOT_CRITICAL * max(gate.bound, gate.indicator)
 

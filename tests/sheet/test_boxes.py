@@ -18,27 +18,34 @@ JOBS = ("rotator-worm-wheel", "coupling-hub", "index-plate")
 
 
 class Keys(HTMLParser):
-    """The keys that stand at the boxes of a sheet, and their units."""
+    """The keys that stand at the boxes of a sheet, row and end put together, and what stands under each box."""
 
     def __init__(self, text: str) -> None:
         super().__init__()
         self.found: dict[str, str] = {}
-        self._open = ""
+        self._row = ""
+        self._tags: list[str] = []
+        self._end: str | None = None
         self.feed(text)
 
     def handle_starttag(self, tag: str, attrs: list[tuple[str, str | None]]) -> None:
-        key = dict(attrs).get("data-key")
-        if key:
-            self._open = key
-            self.found[key] = ""
+        if tag == "tr":
+            self._row = dict(attrs).get("data-key") or ""
+        if tag == "span" and self._row:
+            self._end = ""
+        self._tags.append(tag)
 
     def handle_data(self, data: str) -> None:
-        if self._open:
-            self.found[self._open] += data
+        if self._end is not None and self._tags[-1] == "code":
+            self._end += data
+        elif self._end is not None and self._tags[-1] == "small":
+            self.found[self._row + self._end] = data
 
     def handle_endtag(self, tag: str) -> None:
+        while self._tags and self._tags.pop() != tag:
+            pass  # `i` and its like may be left open
         if tag == "span":
-            self._open = ""
+            self._end = None
 
 
 @pytest.fixture(scope="module")
@@ -69,7 +76,7 @@ def typed(found: Review, key: str, words: str) -> str:
     """Something a planner may have read, well off the plan."""
     fine, size = ("thou", "in") if found.book.inches else ("um", "mm")
     base = next((key.removesuffix(e) for e in ENDS if key.endswith(e)), key)
-    node = entries._node(found.loaded, base)
+    node = entries.node_at(found.loaded, base)
     if key.endswith(".high_at"):
         return "40 deg"
     if key.endswith(".at_temperature"):
@@ -78,6 +85,8 @@ def typed(found: Review, key: str, words: str) -> str:
         return f"0.3 {fine}" if found.book.inches else "2 um"
     if isinstance(node, Dimension):
         return f"{node.value + (node.upper or 0.0) + 0.021:.4f} mm"
+    if key.startswith("mesh.backlash_read.") and "gap" not in key and "uncertainty" not in key:
+        return {"end_float": "included", "along": "circular"}[key.rpartition(".")[2]]
     if key == "mesh.over_balls.measured":
         return "112.05 mm"
     if key.endswith("depth_from.measured"):

@@ -45,6 +45,7 @@ class Boxes:
     def __init__(self, found: Review) -> None:
         self.found = found
         self.show = Showing(found)
+        self.accept = accepted(found)
         self.fine, self.long = ("thou", "in") if found.book.inches else ("um", "mm")
         self.toothed = {
             surface for part in found.loaded.job.parts.values() for surface, s in part.surfaces.items() if _rings(s)
@@ -70,7 +71,7 @@ class Boxes:
         return self._row(key, says, plan, (Cell("", unit),))
 
     def _row(self, key: str, says: str, plan: str, cells: tuple[Cell, ...]) -> Row:
-        return Row(key, clean(says), plan, accepted(self.found, key), self.found.loaded.line(key), cells)
+        return Row(key, clean(says), plan, self.accept.get(key, ""), self.found.loaded.line(key), cells)
 
     # -- one setup -----------------------------------------------------------------------------------------------------
 
@@ -206,6 +207,10 @@ class Boxes:
         if job.place is not None and job.place.worm_axis is not None:
             axis = job.place.worm_axis
             rows.append(self.size("place.worm_axis.length", f"worm's axis from {axis.from_}", axis.length))
+        for name, machine in job.machines.items():
+            if machine.axis_runout is not None:
+                key = f"machines.{name}.axis_runout"
+                rows.append(self.reading(key, f"run-out of the axis of {name}", machine.axis_runout))
         for name, cutter in job.cutters.items():
             if cutter.width is not None:
                 rows.append(self.size(f"cutters.{name}.width", f"width of the insert of {name}", cutter.width))
@@ -242,8 +247,13 @@ class Boxes:
         if isinstance(wheel, Toothing):
             gaps = _round_the_wheel(wheel.count, PLACES)
             places = tuple(Cell(f".readings.gap {n}", f"gap {n}, {self.fine}") for n in gaps)
-            says = "backlash round the wheel"
-            rows.append(self._row("mesh.backlash_read", says, "", (*places, Cell(".uncertainty", f"± {self.fine}"))))
+            says = "backlash round the wheel, the number of the gap at the worm; end float included or taken-out"
+            more = (
+                Cell(".uncertainty", f"± {self.fine}"),
+                Cell(".end_float", "said so"),
+                Cell(".along", "circular, at …"),
+            )
+            rows.append(self._row("mesh.backlash_read", says, "", (*places, *more)))
         flanks = (
             Cell(f".{side}.{end}", word)
             for side in ("right", "left")

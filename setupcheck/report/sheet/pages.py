@@ -45,6 +45,9 @@ STOPPED = {
 }
 """What stands large under a verdict that is no pass."""
 
+MOST_STACKS = 6
+"""Requirements drawn on the sheet, the tightest ones. Source: our choice, two pages of it; all stand on the cover as text."""
+
 MOST_PLACES = 2
 """Operations at which a caution still is their own and stands on their pages; one of more setups stands on the page of cautions.
 Source: our choice, so that what is special to a setup is not lost among what always holds."""
@@ -150,6 +153,7 @@ class Sheet:
     grid: bool
     overview: tuple[Picture, ...]
     stacks: tuple[Picture, ...]
+    more_stacks: int
     not_computed: tuple[str, ...]
     closing: str
 
@@ -162,8 +166,8 @@ def sheet_of(found: Review, read: ReadBack | None = None) -> Sheet:
     drawn = pictures(found, read)
     operations = tuple(_operation(found, setup, boxes, drawn) for setup in job.setups)
     used = {picture.name for one in operations for picture in one.pictures}
-    stacks = tuple(p for name, p in drawn.items() if name.startswith("stack-") and name not in used)
-    overview = tuple(p for name, p in drawn.items() if p not in stacks and name not in used)
+    stacks, more = _tightest(found, drawn)
+    overview = tuple(p for name, p in drawn.items() if not name.startswith("stack-") and name not in used)
     left = [s for s in found.evaluation.cautions if s.severity == "stop-and-check" and not s.answered]
     limited = " of what this version computes" if found.verdict == "pass" and uncomputed(loaded) else ""
     return Sheet(
@@ -197,9 +201,22 @@ def sheet_of(found: Review, read: ReadBack | None = None) -> Sheet:
         grid=job.mesh is not None,
         overview=overview,
         stacks=stacks,
+        more_stacks=more,
         not_computed=tuple(in_lines(uncomputed(loaded))),
         closing=found.rulebook.closing_line,
     )
+
+
+def _tightest(found: Review, drawn: dict[str, Picture]) -> tuple[tuple[Picture, ...], int]:
+    """Drawings of the requirements with the least room left, in the order of the job, and how many there are besides."""
+    shares: list[tuple[float, int, str]] = []
+    for number, scope in enumerate(found.book.instances("stack"), 1):
+        result = found.results.get(scope.key)
+        if f"stack-{number}" in drawn:
+            left = result.margin_share if result is not None else -1.0
+            shares.append((left if left is not None else 1.0, number, f"stack-{number}"))
+    chosen = sorted(shares)[:MOST_STACKS]
+    return tuple(drawn[name] for _, _, name in sorted(chosen, key=lambda one: one[1])), len(shares) - len(chosen)
 
 
 def _troubles(found: Review, op: int | None = None) -> list[Trouble]:
