@@ -152,6 +152,7 @@ class Sheet:
     finished: tuple[Row, ...]
     grid: bool
     overview: tuple[Picture, ...]
+    transfers: tuple[Picture, ...]
     stacks: tuple[Picture, ...]
     more_stacks: int
     not_computed: tuple[str, ...]
@@ -167,6 +168,8 @@ def sheet_of(found: Review, read: ReadBack | None = None) -> Sheet:
     operations = tuple(_operation(found, setup, boxes, drawn) for setup in job.setups)
     used = {picture.name for one in operations for picture in one.pictures}
     stacks, more = _tightest(found, drawn)
+    transfers = tuple(p for name, p in drawn.items() if name == "datums")
+    used |= {picture.name for picture in transfers}
     overview = tuple(p for name, p in drawn.items() if not name.startswith("stack-") and name not in used)
     left = [s for s in found.evaluation.cautions if s.severity == "stop-and-check" and not s.answered]
     limited = " of what this version computes" if found.verdict == "pass" and uncomputed(loaded) else ""
@@ -200,6 +203,7 @@ def sheet_of(found: Review, read: ReadBack | None = None) -> Sheet:
         finished=tuple(boxes.finished()),
         grid=job.mesh is not None,
         overview=overview,
+        transfers=transfers,
         stacks=stacks,
         more_stacks=more,
         not_computed=tuple(in_lines(uncomputed(loaded))),

@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+import math
+
 from setupcheck.flow import Review
 from setupcheck.jobfile.models import Deviation, Dimension
 from setupcheck.notation import show, show_angle
@@ -35,6 +37,11 @@ class Showing:
         number, _, word = show(value, unit, digits).partition(" ")
         whole, _, decimals = number.partition(".")
         return f"{whole}.{decimals.rstrip('0').ljust(3 if self.inches else 2, '0')} {word}"
+
+    def stock(self, value: float) -> str:
+        """Stock that is left somewhere, never said to be more than it is."""
+        unit, steps, digits = ("in", 1000.0 / 25.4, 3) if self.inches else ("mm", 100.0, 2)
+        return show(math.floor(value * steps + 1e-9) / steps, unit, digits)
 
     def angle(self, value: float) -> str:
         """An angle that is set, in all three spellings, so that nobody converts at the machine."""

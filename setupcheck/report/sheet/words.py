@@ -124,7 +124,7 @@ class Words:
         scope = next(s for s in self.found.book.instances("cut") if s.key == f"{setup.op}/{name}")
         stock = self.found.book.get("allow.least_stock", scope)
         if isinstance(stock, Known):
-            yield f"meets at least {self.show.fine(float(stock.value))} of stock"  # type: ignore[arg-type]
+            yield f"meets at least {self.show.stock(float(stock.value))} of stock"  # type: ignore[arg-type]
         elif isinstance(stock, Open) and stock.missing:
             yield f"stock it meets: fill {paper(stock.missing[0], 80)}"
         if cut.removes:
