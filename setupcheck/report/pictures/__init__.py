@@ -32,4 +32,6 @@ def pictures(found: Review, read: ReadBack | None = None) -> dict[str, Picture]:
 
 
 def _all(found: Review, read: ReadBack | None) -> Iterator[Picture]:
-    yield from ()
+    from setupcheck.report.pictures import part
+
+    yield from part.offered(found)

@@ -1,0 +1,329 @@
+"""`part-wheel`: a part in half section, every surface named, marked by the operation that finished it last."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator, Sequence
+from dataclasses import replace
+
+from setupcheck.flow import Review
+from setupcheck.report.pictures import WIDEST, Picture
+from setupcheck.report.pictures.labels import ROW, SIZE, Label, Placed, drawn, placed, rows, spread
+from setupcheck.report.pictures.marks import (
+    AXIS_DASHES,
+    GUESSED_DASHES,
+    Mark,
+    finished_by,
+    plain,
+    short,
+    spelled,
+    wrapped,
+)
+from setupcheck.report.pictures.pieces import extent, finished
+from setupcheck.report.pictures.shape import Piece, Point, Solid, radius_at, solid
+from setupcheck.report.pictures.sketch import (
+    SURFACE,
+    View,
+    axis_line,
+    fitted,
+    metal,
+    pitch_line,
+    runs,
+    sheet,
+    stroke,
+    told,
+    unstated,
+)
+from setupcheck.report.svg import THIN, line, polygon, room, words
+from setupcheck.report.wording import clean
+
+TALLEST = 150.0
+"""Of a part's drawing [mm of paper]. Our choice: with the heading and a list, half an A4 page."""
+
+TOP, LEGEND, RULER = 10.0, 4.8, 13.0
+"""Room of the heading, of a line of the legend and of the positions under the part [mm of paper]. Our choice."""
+
+NAMED = 22
+"""So many surfaces are named at the drawing, more stand in the legend alone. Our choice: what rows of names have room for."""
+
+WIDTHS = (140.0, 120.0, 100.0, 80.0, 60.0)
+"""Widths of the part itself that are tried, until all names go between the edges [mm of paper]. Our choice."""
+
+LABEL = 44.0
+"""The widest name with its size [mm of paper]. Our choice."""
+
+FAR = 2.4
+"""How far a leader stands off the face that it names [mm of paper]. Our choice."""
+
+
+def offered(found: Review) -> Iterator[Picture]:
+    """The drawing of every part."""
+    for part in found.loaded.job.parts:
+        yield Picture(f"part-{part}", _title(found, part), lambda part=part: draw(found, part))  # type: ignore[misc]
+
+
+def _title(found: Review, part: str) -> str:
+    material = found.loaded.job.parts[part].material
+    named = short(part, 3.8, 60.0) + (f", {short(material, 3.8, 50.0)}" if material else "")
+    return f"{named}: half section, who finishes what"
+
+
+def draw(found: Review, part: str) -> str:
+    """The drawing of one part as SVG."""
+    pieces = finished(found, part)
+    body = solid(pieces)
+    sized = [p for p in pieces if p.radius]
+    if not sized:
+        names = ", ".join(clean(p.name) for p in pieces) or "all of them removed"
+        return told(
+            WIDEST, _title(found, part), [f"not drawn: no diameter stated of {short(names, 3.2, 110.0)}"]
+        )
+    legend = _legend(found, part)
+    notes = _notes(pieces, body)
+    below = RULER + LEGEND * (len(legend) + 1) + 3.0
+    for wide in WIDTHS:
+        labels = _labelled(found, pieces, body, wide=wide, below=below)
+        if labels is not None or wide == WIDTHS[-1]:
+            break
+    view, done = labels if labels is not None else (_view(pieces, body, wide=WIDTHS[-1], above=TOP, below=below), [])
+    over = TOP + rows(done) * ROW + 2.0
+    view = replace(view, axis=over + view.across * _widest(pieces, body) + 1.0)
+    done = [replace(p, label=replace(p.label, path=tuple((x, y + view.axis) for x, y in p.label.path))) for p in done]
+    parts = [
+        *metal(view, body),
+        *unstated(view, body),
+        *_lines(found, part, view, body, pieces),
+        *_axis(view, pieces, body),
+        *drawn(done, start=over - 2.0 - 1.0, way=-1),
+    ]
+    bottom = view.axis + view.across * _widest(pieces, body)
+    parts += _positions(found, view, pieces, body, bottom)
+    y = bottom + RULER + 3.0
+    parts += _drawn_legend(legend, y)
+    y += LEGEND * len(legend)
+    parts.append(words((5.0, y + 3.0), short(f"{view.scale()}{notes}", SIZE, WIDEST - 10.0), size=SIZE))
+    return sheet(WIDEST, y + 6.0, title=_title(found, part), parts=parts)
+
+
+def _widest(pieces: Sequence[Piece], body: Solid) -> float:
+    """Largest radius drawn; a bore alone counts, stock around a finished outside does not."""
+    found = [r for _, r in body.outer] or [0.0]
+    found += [p.radius + (p.size or 0.0) / 2.0 for p in pieces if p.radius and not (p.stock and body.outer)]
+    return max(found)
+
+
+def _ends(pieces: Sequence[Piece], body: Solid) -> Point:
+    return (body.low, body.high) if body.outer else extent(pieces)
+
+
+def _view(pieces: Sequence[Piece], body: Solid, *, wide: float, above: float, below: float) -> View:
+    low, high = _ends(pieces, body)
+    along, across = fitted(low, high, _widest(pieces, body), wide=wide, tall=max(TALLEST - above - below - 4.0, 20.0))
+    return View(along, across, (WIDEST - along * (high - low)) / 2.0, 0.0, low)
+
+
+def _labelled(
+    found: Review, pieces: Sequence[Piece], body: Solid, *, wide: float, below: float
+) -> tuple[View, list[Placed]] | None:
+    """The largest view whose names have room, with their places; None where they have not."""
+    count = 2
+    for _ in range(3):  # more rows leave less height, a smaller drawing may need more rows
+        view = _view(pieces, body, wide=wide, above=TOP + count * ROW + 2.0, below=below)
+        done = placed(_labels(found, view, pieces, body), width=WIDEST)
+        if done is None:
+            return None
+        if rows(done) <= count:
+            return view, done
+        count = rows(done)
+    return view, done
+
+
+def _labels(found: Review, view: View, pieces: Sequence[Piece], body: Solid) -> list[Label]:
+    shown = [p for p in pieces if anchor(p, view, body, pieces) is not None][:NAMED]
+    return named(
+        view,
+        body,
+        pieces,
+        [(p, spelled(found, p.part, p.name, LABEL, SIZE), finished_by(found, p.part, p.name)) for p in shown],
+    )
+
+
+def named(
+    view: View,
+    body: Solid,
+    pieces: Sequence[Piece],
+    told_of: Sequence[tuple[Piece, str, Mark]],
+    *,
+    sign: int = 1,
+) -> list[Label]:
+    """A label for each surface, their leaders standing apart."""
+    starts = [anchor(p, view, body, pieces, sign) or ((0.0, 0.0),) for p, _, _ in told_of]
+    xs = spread([s[-1][0] for s in starts], apart=2.0, low=6.0, high=WIDEST - 6.0)
+    found = []
+    for (_, text, mark), path, x in zip(told_of, starts, xs, strict=True):
+        moved = _moved(path, x, sign)
+        found.append(Label(text, moved, mark.flag, mark.colour))
+    return found
+
+
+def _moved(path: tuple[Point, ...], x: float, sign: int) -> tuple[Point, ...]:
+    """The leader with its upright part at another place."""
+    if abs(path[-1][0] - x) < 1e-6:
+        return path
+    if len(path) > 1:  # off a face: farther away from it
+        return (*path[:-1], (x, path[-1][1]))
+    return (path[0], (x, path[0][1] - sign * 2.0))
+
+
+def anchor(
+    piece: Piece, view: View, body: Solid, pieces: Sequence[Piece], sign: int = 1
+) -> tuple[Point, ...] | None:
+    """Where a leader meets a surface, and where it goes up from; None for a surface that is not drawn."""
+    found = runs(piece, body, pieces) or pitch_line(piece, view)
+    if piece.kind == "teeth" and piece.radius:
+        z = piece.low + 0.3 * (piece.high - piece.low)
+        return (view.at(z, piece.radius, sign),)
+    if not found:
+        return None
+    longest = max(found, key=lambda run: abs(run[-1][0] - run[0][0]) + abs(run[-1][1] - run[0][1]))
+    (z1, r1), (z2, r2) = longest[0], longest[-1]
+    if piece.kind == "face":
+        at = view.at(z1, r1 + 0.6 * (r2 - r1), sign)
+        return (at, (at[0] + view.way * piece.facing * FAR, at[1]))
+    if piece.kind == "throat":
+        z, r = longest[len(longest) // 2]
+        return (view.at(z, r, sign),)
+    if piece.kind == "centre":
+        return (view.at(z1, r1, sign), (view.x(z1) + view.way * piece.facing * FAR, view.y(r1, sign)))
+    share = {"bore": 0.42, "holes": 0.1, "slot": 0.9}.get(piece.kind, 0.5)
+    return (view.at(z1 + share * (z2 - z1), r1, sign),)
+
+
+def _lines(found: Review, part: str, view: View, body: Solid, pieces: Sequence[Piece]) -> list[str]:
+    """The line of every surface in colour and pattern of its operation."""
+    parts = []
+    for piece in pieces:
+        mark = finished_by(found, part, piece.name)
+        if piece.stock and body.outer and not _stands(piece, body):
+            continue
+        for run in runs(piece, body, pieces):
+            for sign in (1, -1) if piece.kind in ("cylinder", "taper", "thread", "face", "throat") else (1,):
+                parts.append(stroke(view, run, sign=sign, width=SURFACE, dashes=mark.dashes, colour=mark.colour))
+        parts += pattern_lines(view, piece, body, mark.colour)
+        if piece.kind == "thread" and piece.radius:
+            core = 0.9 * piece.radius  # a thread's root as a thin line; ISO 6410 (from memory)
+            ends = [(piece.low, core), (piece.high, core)]
+            parts += [stroke(view, ends, sign=s, width=THIN, dashes="", colour=mark.colour) for s in (1, -1)]
+    return parts
+
+
+def _stands(piece: Piece, body: Solid) -> bool:
+    """True where stock is still the outside of the part."""
+    return piece.radius is not None and any(abs(r - piece.radius) < 1e-6 * piece.radius for _, r in body.outer)
+
+
+def pattern_lines(view: View, piece: Piece, body: Solid, colour: str) -> list[str]:
+    """Centre lines of teeth, holes and slots in both halves; a hole's walls dashed, as its depth is not stated."""
+    parts = []
+    for run in pitch_line(piece, view):
+        for sign in (1, -1):
+            parts.append(stroke(view, run, sign=sign, width=0.25, dashes=AXIS_DASHES, colour=colour))
+    if piece.kind in ("holes", "slot") and piece.radius and piece.size:
+        inward = -1 if piece.low > sum(_ends([piece], body)) / 2.0 else 1
+        for radius in (piece.radius - piece.size / 2.0, piece.radius + piece.size / 2.0):
+            if radius > 0.0:
+                depth = _thickness(body, piece.low, radius, inward)
+                run = [(piece.low, radius), (piece.low + inward * depth, radius)]
+                parts.append(stroke(view, run, sign=1, width=0.5, dashes=GUESSED_DASHES, colour=colour))
+    return parts
+
+
+def _thickness(body: Solid, z: float, radius: float, inward: int) -> float:
+    """Metal behind a place at a radius; where there is none, as far as the hole is from the axis."""
+    there = [a for a, r in body.outer if r >= radius]
+    end = (min(there) if inward < 0 else max(there)) if there else z
+    return abs(end - z) or radius / 4.0
+
+
+def _axis(view: View, pieces: Sequence[Piece], body: Solid) -> list[str]:
+    low, high = _ends(pieces, body)
+    return [axis_line(view, low, high, beyond=6.0), *z_arrow(view.x(high) + 7.0, view.axis, 1)]
+
+
+def z_arrow(x: float, y: float, way: int) -> list[str]:
+    """Which way the part's heights run."""
+    tip = x + way * 7.0
+    return [
+        line((x, y), (tip, y), width=0.25),
+        polygon([(tip, y), (tip - way * 2.2, y - 0.7), (tip - way * 2.2, y + 0.7)]),
+        words((tip + way * 1.0, y + 1.0), "+z", size=SIZE, anchor="start" if way > 0 else "end"),
+    ]
+
+
+def _positions(found: Review, view: View, pieces: Sequence[Piece], body: Solid, bottom: float) -> list[str]:
+    """Positions along the part, each under its place, in two rows."""
+    heights = sorted({z for p in pieces if not p.stock for z in (p.low, p.high)} or {z for p in pieces for z in (p.low, p.high)})
+    texts = [plain(found, z) for z in heights]
+    apart = max(room(text, SIZE) for text in texts) / 2.0 + 1.2
+    most = int((WIDEST - 24.0) / apart)
+    if len(heights) > most:
+        every = -(-len(heights) // most)
+        heights, texts = heights[::every], texts[::every]
+    xs = spread([view.x(z) for z in heights], apart=apart, low=10.0, high=WIDEST - 14.0)
+    unit = "in" if found.loaded.job.units == "in" else "mm"
+    parts = [words((4.0, bottom + 5.0), "z", size=SIZE), words((WIDEST - 4.0, bottom + 5.0), unit, size=SIZE, anchor="end")]
+    for i, (z, text, x) in enumerate(zip(heights, texts, xs, strict=True)):
+        place = view.x(z)
+        start = view.y(radius_at(body.outer, z), -1) + 0.8 if body.outer else view.axis + 1.0
+        base = bottom + 7.6 + (i % 2) * 4.2
+        parts.append(line((place, min(start, bottom + 1.0)), (place, bottom + 2.0)))
+        parts.append(line((place, bottom + 2.0), (x, bottom + 4.0)))
+        if i % 2:
+            parts.append(line((x, bottom + 4.0), (x, base - 3.0)))
+        parts.append(words((x, base), text, size=SIZE, anchor="middle"))
+    return parts
+
+
+def _legend(found: Review, part: str) -> list[tuple[Mark | None, str]]:
+    """A line for each operation: what it finished. The mark is None on a line that goes on."""
+    groups: dict[Mark, list[str]] = {}
+    for name in found.loaded.job.parts[part].surfaces:
+        gone = found.floor.removed.get((part, name))
+        mark = finished_by(found, part, name)
+        states = found.floor.bodies[part].states.get((part, name), [])
+        rough = " (rough)" if states and states[-1].rough else ""
+        told = f"{short(name, SIZE, 40.0)}{rough}" if gone is None else f"{short(name, SIZE, 40.0)} (removed in op {gone})"
+        groups.setdefault(mark, []).append(told)
+    legend: list[tuple[Mark | None, str]] = []
+    ordered = sorted(groups, key=lambda m: (m.flag.isdigit(), int(m.flag) if m.flag.isdigit() else 0, m.flag))
+    for mark in ordered:
+        called = f"op {mark.flag}" if mark.flag.isdigit() else mark.flag
+        text = wrapped(f"{called}: {', '.join(groups[mark])}", SIZE, WIDEST - 30.0, most=2)
+        legend += [(mark if i == 0 else None, each) for i, each in enumerate(text)]
+    if len(legend) > 12:
+        legend = [*legend[:11], (None, f"and {len(legend) - 11} lines more, see the job file")]
+    return legend
+
+
+def _drawn_legend(legend: Sequence[tuple[Mark | None, str]], top: float) -> list[str]:
+    parts = []
+    for i, (mark, text) in enumerate(legend):
+        y = top + LEGEND * i + 3.0
+        if mark is not None:
+            parts.append(line((5.0, y - 1.1), (21.0, y - 1.1), width=SURFACE, dashes=mark.dashes, colour=mark.colour))
+        parts.append(words((24.0, y), text, size=SIZE))
+    return parts
+
+
+def _notes(pieces: Sequence[Piece], body: Solid) -> str:
+    told = []
+    if not body.outer:
+        told.append("no outside diameter stated: surfaces alone")
+    if any(p.kind in ("holes", "slot") for p in pieces):
+        told.append("holes and slots dashed: depth not stated")
+    if body.unstated:
+        told.append("outline dashed: not stated")
+    if any(p.kind == "teeth" for p in pieces):
+        told.append("dash-dotted: pitch circle")
+    return "".join(f"; {one}" for one in told)
+
+
