@@ -32,6 +32,7 @@ def pictures(found: Review, read: ReadBack | None = None) -> dict[str, Picture]:
 
 
 def _all(found: Review, read: ReadBack | None) -> Iterator[Picture]:
-    from setupcheck.report.pictures import part
+    from setupcheck.report.pictures import holdings, part
 
     yield from part.offered(found)
+    yield from holdings.offered(found)

@@ -79,12 +79,19 @@ def spread(places: Sequence[float], *, apart: float, low: float, high: float) ->
     return moved
 
 
-def placed(labels: Sequence[Label], *, width: float, margin: float = 4.0) -> list[Placed] | None:
-    """A row for every name; None where they do not go between the edges. Outer names first, so that rows climb inwards."""
-    middle = width / 2.0
+def placed(
+    labels: Sequence[Label], *, width: float, middle: float | None = None, margin: float = 4.0
+) -> list[Placed] | None:
+    """A row for every name; None where they do not go between the edges. Outer names first, so that rows climb inwards.
+
+    middle  what they climb towards from both sides; None: the middle of the leaders
+    """
+    if middle is None:
+        xs = sorted(label.x for label in labels) or [0.0]
+        middle = (xs[(len(xs) - 1) // 2] + xs[len(xs) // 2]) / 2.0
     done: list[Placed] = []
     for label in sorted(labels, key=lambda one: (-abs(one.x - middle), one.x, one.text)):
-        found = _place(label, labels, done, width, margin)
+        found = _place(label, labels, done, width, middle, margin)
         if found is None:
             return None
         done.append(found)
@@ -92,9 +99,9 @@ def placed(labels: Sequence[Label], *, width: float, margin: float = 4.0) -> lis
 
 
 def _place(
-    label: Label, labels: Sequence[Label], done: Sequence[Placed], width: float, margin: float
+    label: Label, labels: Sequence[Label], done: Sequence[Placed], width: float, middle: float, margin: float
 ) -> Placed | None:
-    outward = (label.x - label.wide, label.x) if label.x < width / 2.0 else (label.x, label.x - label.wide)
+    outward = (label.x - label.wide, label.x) if label.x < middle else (label.x, label.x - label.wide)
     waiting = [other for other in labels if other is not label and all(p.label is not other for p in done)]
     for strict in (True, False):  # first as if every name still to come went over this one
         for row in range(len(labels)):

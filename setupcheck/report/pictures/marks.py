@@ -16,7 +16,7 @@ COLOURS = ("#1f5fa8", "#b5460f", "#2b7a2b", "#7a2f9e", "#a8123e", "#00707a", "#6
 PATTERNS = ("", "5 1.2", "2.2 1.2", "6 1 1.2 1", "1 1", "8 1 1 1 1 1", "3.6 0.8 0.8 0.8")
 """Line patterns [mm]; beside them every line bears a number, so that nothing hangs on telling them apart. Our choice."""
 
-STOCK_DASHES, AXIS_DASHES, GUESSED_DASHES = "6 1 1 1 1 1", "6 1.2 0.8 1.2", "1.4 1"
+STOCK_DASHES, AXIS_DASHES, GUESSED_DASHES = "6 1 1 1 1 1", "6 1.2 0.8 1.2", "1.1 0.9"
 """Long dashed double-dotted, long dashed dotted, dashed. Source: ISO 128 has these three for such lines (from memory)."""
 
 ELLIPSIS = "…"
@@ -127,11 +127,11 @@ def spelled(found: Review, part: str, name: str, most: float, size: float) -> st
         case "throat":
             told = f"Ø{plain(found, surface.diameter)} R{plain(found, surface.radius)}"
         case "face" | "centre":
-            told = f"at {plain(found, surface.at)}" if surface.kind == "face" else "centre hole"
+            told = f"at {plain(found, surface.at)}" if surface.kind == "face" else "centre"
         case kind:
             told = f"Ø{stated_size(found, part, name)}"
             if kind in ("taper", "thread"):
                 told = f"{kind} {told}"
     called = " ".join(clean(name).split())
-    told = short(told, size, 0.6 * most)
+    told = short(told, size, max(most - 12.0, 0.6 * most))
     return f"{short(called, size, most - room(told, size) - room(' ', size))} {told}"

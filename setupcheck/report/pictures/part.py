@@ -6,6 +6,7 @@ from collections.abc import Iterator, Sequence
 from dataclasses import replace
 
 from setupcheck.flow import Review
+from setupcheck.record import record
 from setupcheck.report.pictures import WIDEST, Picture
 from setupcheck.report.pictures.labels import ROW, SIZE, Label, Placed, drawn, placed, rows, spread
 from setupcheck.report.pictures.marks import (
@@ -45,11 +46,11 @@ TOP, LEGEND, RULER = 10.0, 4.8, 13.0
 NAMED = 22
 """So many surfaces are named at the drawing, more stand in the legend alone. Our choice: what rows of names have room for."""
 
-WIDTHS = (140.0, 120.0, 100.0, 80.0, 60.0)
-"""Widths of the part itself that are tried, until all names go between the edges [mm of paper]. Our choice."""
+TRIES = ((140.0, 58.0), (140.0, 44.0), (120.0, 58.0), (120.0, 44.0), (100.0, 44.0), (80.0, 44.0), (60.0, 40.0))
+"""Widths of the part itself and of the widest name that are tried, until all names go between the edges [mm of paper]."""
 
-LABEL = 44.0
-"""The widest name with its size [mm of paper]. Our choice."""
+BESIDE = 62.0
+"""Room of the legend where it stands left of a short part [mm of paper]. Our choice."""
 
 FAR = 2.4
 """How far a leader stands off the face that it names [mm of paper]. Our choice."""
@@ -67,41 +68,64 @@ def _title(found: Review, part: str) -> str:
     return f"{named}: half section, who finishes what"
 
 
+@record
+class _Sheet:
+    """How the sheet is divided: legend under the part or left of it, its lines, the notes."""
+
+    beside: bool
+    legend: tuple[tuple[Mark | None, str], ...]
+    notes: tuple[str, ...]
+
+    @property
+    def below(self) -> float:
+        """What goes under the part."""
+        return RULER + LEGEND * (len(self.notes) + (0 if self.beside else len(self.legend))) + 4.0
+
+
 def draw(found: Review, part: str) -> str:
     """The drawing of one part as SVG."""
     pieces = finished(found, part)
     body = solid(pieces)
-    sized = [p for p in pieces if p.radius]
-    if not sized:
+    if not any(p.radius for p in pieces):
         names = ", ".join(clean(p.name) for p in pieces) or "all of them removed"
-        return told(
-            WIDEST, _title(found, part), [f"not drawn: no diameter stated of {short(names, 3.2, 110.0)}"]
-        )
-    legend = _legend(found, part)
-    notes = _notes(pieces, body)
-    below = RULER + LEGEND * (len(legend) + 1) + 3.0
-    for wide in WIDTHS:
-        labels = _labelled(found, pieces, body, wide=wide, below=below)
-        if labels is not None or wide == WIDTHS[-1]:
-            break
-    view, done = labels if labels is not None else (_view(pieces, body, wide=WIDTHS[-1], above=TOP, below=below), [])
-    over = TOP + rows(done) * ROW + 2.0
-    view = replace(view, axis=over + view.across * _widest(pieces, body) + 1.0)
+        says = f"not drawn: no diameter stated of {short(names, 3.2, 110.0)}"
+        return told(WIDEST, _title(found, part), [says])
+    found_room = [
+        (laid, sheet_)
+        for beside in (True, False)
+        if (laid := _laid(found, pieces, body, sheet_ := _sheet(found, part, pieces, body, beside=beside))) is not None
+    ]
+    if not found_room:  # no names then
+        sheet_ = _sheet(found, part, pieces, body, beside=False)
+        found_room = [((_view(pieces, body, sheet_, wide=60.0, above=TOP), []), sheet_)]
+    (view, done), sheet_ = max(found_room, key=lambda one: one[0][0].across)
+    over = TOP + rows(done) * ROW + 3.0
+    view = replace(view, axis=over + view.across * _widest(pieces, body))
     done = [replace(p, label=replace(p.label, path=tuple((x, y + view.axis) for x, y in p.label.path))) for p in done]
+    bottom = view.axis + view.across * _widest(pieces, body)
     parts = [
         *metal(view, body),
         *unstated(view, body),
         *_lines(found, part, view, body, pieces),
         *_axis(view, pieces, body),
-        *drawn(done, start=over - 2.0 - 1.0, way=-1),
+        *drawn(done, start=over - 3.0, way=-1),
+        *_positions(found, view, pieces, body, bottom),
     ]
-    bottom = view.axis + view.across * _widest(pieces, body)
-    parts += _positions(found, view, pieces, body, bottom)
     y = bottom + RULER + 3.0
-    parts += _drawn_legend(legend, y)
-    y += LEGEND * len(legend)
-    parts.append(words((5.0, y + 3.0), short(f"{view.scale()}{notes}", SIZE, WIDEST - 10.0), size=SIZE))
-    return sheet(WIDEST, y + 6.0, title=_title(found, part), parts=parts)
+    if sheet_.beside:
+        parts += _drawn_legend(sheet_.legend, over + 2.0)
+        y = max(y, over + 4.0 + LEGEND * len(sheet_.legend))
+    else:
+        parts += _drawn_legend(sheet_.legend, y)
+        y += LEGEND * len(sheet_.legend)
+    parts += [words((5.0, y + 3.0 + LEGEND * i), text, size=SIZE) for i, text in enumerate([view.scale(), *sheet_.notes])]
+    return sheet(WIDEST, y + 6.0 + LEGEND * len(sheet_.notes), title=_title(found, part), parts=parts)
+
+
+def _sheet(found: Review, part: str, pieces: Sequence[Piece], body: Solid, *, beside: bool) -> _Sheet:
+    wide = BESIDE - 21.0 if beside else WIDEST - 30.0
+    notes = wrapped("; ".join(_notes(pieces, body)), SIZE, WIDEST - 10.0, most=2)
+    return _Sheet(beside, tuple(_legend(found, part, wide)), tuple(n for n in notes if n))
 
 
 def _widest(pieces: Sequence[Piece], body: Solid) -> float:
@@ -115,35 +139,50 @@ def _ends(pieces: Sequence[Piece], body: Solid) -> Point:
     return (body.low, body.high) if body.outer else extent(pieces)
 
 
-def _view(pieces: Sequence[Piece], body: Solid, *, wide: float, above: float, below: float) -> View:
+def _view(pieces: Sequence[Piece], body: Solid, sheet_: _Sheet, *, wide: float, above: float) -> View:
     low, high = _ends(pieces, body)
-    along, across = fitted(low, high, _widest(pieces, body), wide=wide, tall=max(TALLEST - above - below - 4.0, 20.0))
-    return View(along, across, (WIDEST - along * (high - low)) / 2.0, 0.0, low)
+    tall = max(TALLEST - above - sheet_.below - 4.0, 20.0)
+    along, across = fitted(low, high, _widest(pieces, body), wide=wide, tall=tall)
+    left = BESIDE if sheet_.beside else 0.0
+    return View(along, across, left + (WIDEST - left - along * (high - low)) / 2.0, 0.0, low)
 
 
-def _labelled(
-    found: Review, pieces: Sequence[Piece], body: Solid, *, wide: float, below: float
+def _laid(
+    found: Review, pieces: Sequence[Piece], body: Solid, sheet_: _Sheet
 ) -> tuple[View, list[Placed]] | None:
     """The largest view whose names have room, with their places; None where they have not."""
-    count = 2
-    for _ in range(3):  # more rows leave less height, a smaller drawing may need more rows
-        view = _view(pieces, body, wide=wide, above=TOP + count * ROW + 2.0, below=below)
-        done = placed(_labels(found, view, pieces, body), width=WIDEST)
+    for wide, label in TRIES:
+        if sheet_.beside and wide > WIDEST - BESIDE - 30.0:
+            continue
+        laid = _named_view(found, pieces, body, sheet_, wide=wide, label=label)
+        if laid is not None:
+            return laid
+    return None
+
+
+def _named_view(
+    found: Review, pieces: Sequence[Piece], body: Solid, sheet_: _Sheet, *, wide: float, label: float
+) -> tuple[View, list[Placed]] | None:
+    count = 1
+    for _ in range(6):  # more rows leave less height, a smaller drawing may need more rows
+        view = _view(pieces, body, sheet_, wide=wide, above=TOP + count * ROW + 3.0)
+        done = placed(_labels(found, view, pieces, body, label), width=WIDEST)
         if done is None:
             return None
         if rows(done) <= count:
             return view, done
         count = rows(done)
-    return view, done
+    return None
 
 
-def _labels(found: Review, view: View, pieces: Sequence[Piece], body: Solid) -> list[Label]:
-    shown = [p for p in pieces if anchor(p, view, body, pieces) is not None][:NAMED]
+def _labels(found: Review, view: View, pieces: Sequence[Piece], body: Solid, most: float) -> list[Label]:
+    standing = [p for p in pieces if not p.stock or not body.outer or p.kind == "centre" or _stands(p, body)]
+    shown = [p for p in standing if anchor(p, view, body, pieces) is not None][:NAMED]
     return named(
         view,
         body,
         pieces,
-        [(p, spelled(found, p.part, p.name, LABEL, SIZE), finished_by(found, p.part, p.name)) for p in shown],
+        [(p, spelled(found, p.part, p.name, most, SIZE), finished_by(found, p.part, p.name)) for p in shown],
     )
 
 
@@ -194,7 +233,11 @@ def anchor(
         return (view.at(z, r, sign),)
     if piece.kind == "centre":
         return (view.at(z1, r1, sign), (view.x(z1) + view.way * piece.facing * FAR, view.y(r1, sign)))
-    share = {"bore": 0.42, "holes": 0.1, "slot": 0.9}.get(piece.kind, 0.5)
+    if piece.kind in ("holes", "slot"):
+        inward = _inward(piece, body)
+        depth = min(_thickness(body, piece.low, piece.radius or 0.0, inward), 8.0 / view.along)
+        return (view.at(piece.low + inward * depth * (0.3 if piece.kind == "holes" else 0.6), r1, sign),)
+    share = 0.42 if piece.kind == "bore" else 0.5
     return (view.at(z1 + share * (z2 - z1), r1, sign),)
 
 
@@ -228,13 +271,18 @@ def pattern_lines(view: View, piece: Piece, body: Solid, colour: str) -> list[st
         for sign in (1, -1):
             parts.append(stroke(view, run, sign=sign, width=0.25, dashes=AXIS_DASHES, colour=colour))
     if piece.kind in ("holes", "slot") and piece.radius and piece.size:
-        inward = -1 if piece.low > sum(_ends([piece], body)) / 2.0 else 1
+        inward = _inward(piece, body)
         for radius in (piece.radius - piece.size / 2.0, piece.radius + piece.size / 2.0):
             if radius > 0.0:
                 depth = _thickness(body, piece.low, radius, inward)
                 run = [(piece.low, radius), (piece.low + inward * depth, radius)]
                 parts.append(stroke(view, run, sign=1, width=0.5, dashes=GUESSED_DASHES, colour=colour))
     return parts
+
+
+def _inward(piece: Piece, body: Solid) -> int:
+    """Which way metal lies from the end that a hole or slot is in."""
+    return -1 if piece.low > sum(_ends([piece], body)) / 2.0 else 1
 
 
 def _thickness(body: Solid, z: float, radius: float, inward: int) -> float:
@@ -261,7 +309,8 @@ def z_arrow(x: float, y: float, way: int) -> list[str]:
 
 def _positions(found: Review, view: View, pieces: Sequence[Piece], body: Solid, bottom: float) -> list[str]:
     """Positions along the part, each under its place, in two rows."""
-    heights = sorted({z for p in pieces if not p.stock for z in (p.low, p.high)} or {z for p in pieces for z in (p.low, p.high)})
+    placed_ = [p for p in pieces if not p.stock] or pieces
+    heights = sorted({z for p in placed_ for z in ((p.middle,) if p.kind == "teeth" else (p.low, p.high))})
     texts = [plain(found, z) for z in heights]
     apart = max(room(text, SIZE) for text in texts) / 2.0 + 1.2
     most = int((WIDEST - 24.0) / apart)
@@ -283,7 +332,7 @@ def _positions(found: Review, view: View, pieces: Sequence[Piece], body: Solid, 
     return parts
 
 
-def _legend(found: Review, part: str) -> list[tuple[Mark | None, str]]:
+def _legend(found: Review, part: str, wide: float) -> list[tuple[Mark | None, str]]:
     """A line for each operation: what it finished. The mark is None on a line that goes on."""
     groups: dict[Mark, list[str]] = {}
     for name in found.loaded.job.parts[part].surfaces:
@@ -297,7 +346,7 @@ def _legend(found: Review, part: str) -> list[tuple[Mark | None, str]]:
     ordered = sorted(groups, key=lambda m: (m.flag.isdigit(), int(m.flag) if m.flag.isdigit() else 0, m.flag))
     for mark in ordered:
         called = f"op {mark.flag}" if mark.flag.isdigit() else mark.flag
-        text = wrapped(f"{called}: {', '.join(groups[mark])}", SIZE, WIDEST - 30.0, most=2)
+        text = wrapped(f"{called}: {', '.join(groups[mark])}", SIZE, wide, most=4)
         legend += [(mark if i == 0 else None, each) for i, each in enumerate(text)]
     if len(legend) > 12:
         legend = [*legend[:11], (None, f"and {len(legend) - 11} lines more, see the job file")]
@@ -310,20 +359,25 @@ def _drawn_legend(legend: Sequence[tuple[Mark | None, str]], top: float) -> list
         y = top + LEGEND * i + 3.0
         if mark is not None:
             parts.append(line((5.0, y - 1.1), (21.0, y - 1.1), width=SURFACE, dashes=mark.dashes, colour=mark.colour))
-        parts.append(words((24.0, y), text, size=SIZE))
+        parts.append(words((23.0, y), text, size=SIZE))
     return parts
 
 
-def _notes(pieces: Sequence[Piece], body: Solid) -> str:
-    told = []
+def _notes(pieces: Sequence[Piece], body: Solid) -> list[str]:
+    notes = []
     if not body.outer:
-        told.append("no outside diameter stated: surfaces alone")
+        notes.append("no outside diameter stated: surfaces alone")
     if any(p.kind in ("holes", "slot") for p in pieces):
-        told.append("holes and slots dashed: depth not stated")
+        notes.append("walls of holes and slots dashed, as no depth is stated")
     if body.unstated:
-        told.append("outline dashed: not stated")
+        notes.append("outline dashed where no surface states it")
     if any(p.kind == "teeth" for p in pieces):
-        told.append("dash-dotted: pitch circle")
-    return "".join(f"; {one}" for one in told)
+        notes.append("pitch circle dash-dotted")
+    within = [p.name for p in pieces if p.kind == "cylinder" and not p.stock and p.radius and _buried(p, body)]
+    if within:
+        notes.append(f"inside other metal as stated: {short(', '.join(within), SIZE, 60.0)}")
+    return notes
 
 
+def _buried(piece: Piece, body: Solid) -> bool:
+    return all(radius_at(body.outer, z) > (piece.radius or 0.0) * (1.0 + 1e-6) for z in (piece.low, piece.middle, piece.high))

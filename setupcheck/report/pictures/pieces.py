@@ -53,12 +53,6 @@ def as_of(found: Review, part: str, op: int) -> list[Piece]:
     return pieces
 
 
-def taken(found: Review, part: str, op: int) -> list[Piece]:
-    """Surfaces that are gone after this operation and were there before it."""
-    gone = [key for key, at in found.floor.removed.items() if at == op and key[0] == part]
-    return [_piece(found, *key, found.loaded.job.parts[key[0]].surfaces[key[1]], None) for key in gone]
-
-
 def together(found: Review, part: str, op: int) -> list[str]:
     """Parts that are one piece with this one when the operation begins, itself first; a joining counts its own."""
     groups = {name: [name] for name in found.loaded.job.parts}

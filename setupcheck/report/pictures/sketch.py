@@ -20,8 +20,8 @@ from setupcheck.report.svg import Point, line, lines, picture, polyline, words
 OUTLINE, SURFACE = 0.35, 0.7
 """Widths of the outline and of a surface's own line [mm of paper]. Source: ISO 128 has 0.35 and 0.7 (from memory)."""
 
-LEAST = 9.0
-"""Smallest length or half height of a part on paper [mm]: below it the other scale is left alone and this one grows. Our choice."""
+LEAST = 3.0
+"""Smallest length or radius of a part on paper [mm]: below it the other scale is left alone and this one grows. Our choice."""
 
 HATCH, BLIND = 1.9, 2600.0
 """Distance of hatch lines, and area on paper [mm, mm2] above which they stand wider apart. Our choice."""
@@ -69,21 +69,26 @@ def fitted(low: float, high: float, radius: float, *, wide: float, tall: float) 
     across = _step(tall / 2.0 / radius)
     along = _step(wide / length) if length > 0.0 else across
     both = min(along, across)
-    if both * radius < LEAST / 2.0:
-        return both, min(across, _step(LEAST / radius))
+    if both * radius < LEAST:
+        return both, min(across, _step(2.0 * LEAST / radius))
     if 0.0 < both * length < LEAST:
-        return min(along, _step(LEAST * 1.5 / length)), both
+        return min(along, _step(2.0 * LEAST / length)), both
     return both, both
 
 
 def _step(scale: float) -> float:
-    """The next smaller scale of the list."""
+    """The next smaller scale of the list, 2:1 or 1:2.
+
+    >>> _step(2.2), _step(0.45)
+    (2.0, 0.4)
+    """
     if not (math.isfinite(scale) and scale > 0.0):
         return 1.0
-    power = 10.0 ** math.floor(math.log10(scale))
-    sizes = [s * power for s in (0.1 * 8.0, *STEPS)] + [power / s for s in STEPS]
-    below = [s for s in sizes if s <= scale * (1.0 + 1e-9)]
-    return max(below)
+    if scale >= 1.0:
+        power = 10.0 ** math.floor(math.log10(scale))
+        return max(s * power for s in STEPS if s * power <= scale * (1.0 + 1e-9))
+    power = 10.0 ** math.floor(math.log10(1.0 / scale))
+    return 1.0 / min(s * power for s in (*STEPS, 10.0) if s * power >= (1.0 - 1e-9) / scale)
 
 
 def _ratio(scale: float) -> str:
