@@ -113,7 +113,7 @@ def rest(bench: Bench, x: float, way: int, radii: Point, *, thin: bool) -> list[
 
 def pin(bench: Bench, x: float, way: int, half: float) -> list[str]:
     """A stop: a pin whose end touches a face."""
-    end = min(bench.chuck, x - 3.0) if way < 0 else x + 8.0
+    end = x + way * 7.0
     y = bench.axis + half
     head = [(x, y), (x + way * 1.8, y - 1.2), (x + way * 1.8, y + 1.2)]
     return [line((end, y), (x + way * 1.8, y), width=0.9, colour="#555555"), polygon(head)]

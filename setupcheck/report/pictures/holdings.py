@@ -110,8 +110,9 @@ class Scene:
 def draw(found: Review, setup: Setup) -> str:
     """The drawing of one holding as SVG."""
     part = held_part(found, setup)
+    held_on = _held_on(found, setup)
     shown = [
-        tuple(way(found, of=name, to=part).of(p) for p in as_of(found, name, setup.op))
+        tuple(way(found, of=name, to=part).of(p) for p in as_of(found, name, setup.op, held_on))
         for name in together(found, part, setup.op)
     ]
     shown = [pieces for pieces in shown if pieces]
@@ -139,6 +140,13 @@ def draw(found: Review, setup: Setup) -> str:
     y = low + rows(bottom) * ROW + 3.0
     parts += [words((5.0, y + KEY * i + 1.5), text, size=SIZE) for i, text in enumerate(key)]
     return sheet(WIDEST, y + below - 3.0, title=_title(found, setup), parts=parts)
+
+
+def _held_on(found: Review, setup: Setup) -> set[tuple[str, str]]:
+    """Surfaces that the holding names."""
+    held = holding(found, setup)
+    entries = [getattr(held.hold, step) for step in RULES] if held.hold is not None else []
+    return {(ref.part, ref.surface) for e in entries if e is not None for ref in [ref_held(found, held, e.on)]}
 
 
 def _laid(
@@ -280,7 +288,9 @@ def _devices(scene: Scene, held: Setup) -> list[str]:
         if isinstance(datum.entry, Square) and datum.piece is not None:
             parts += _rested(scene, bench, datum)
             carried = True
-    return [*(chuck(bench, max(0.7 * bench.reach, 9.0)) if carried else []), *parts]
+    grips = [grip for d in scene.datums if (grip := _grip(scene, d)) is not None and not grip.inner]
+    half = max([0.75 * bench.reach, 9.0, *(max(g.half, g.before) + 6.0 for g in grips)])
+    return [*(chuck(bench, min(half, bench.reach + 7.5)) if carried else []), *parts]
 
 
 def _front_devices(scene: Scene) -> list[str]:
@@ -298,10 +308,11 @@ def _front_devices(scene: Scene) -> list[str]:
             parts += centre_point(bench, x, outward, 0.2 * radius_at(body.outer, piece.low) * view.across)
         elif isinstance(entry, Centre) and entry.by in DIALS and piece.radius:
             parts += _dialled(scene, bench, datum)
-        elif isinstance(entry, Stop) and not any(d.piece == piece and isinstance(d.entry, Square) for d in scene.datums):
-            toward = view.way * (piece.facing or 1)
-            half = entry.radius * view.across if entry.radius else min(0.5 * radius_at(body.outer, piece.low) * view.across, bench.reach)
-            parts += pin(bench, view.x(piece.low), toward, half)
+        elif isinstance(entry, Stop):
+            found = runs(piece, body, scene.of(piece)[1])
+            if found and not any(d.piece == piece and d is not datum for d in scene.datums):
+                half = entry.radius or 0.6 * found[0][0][1] + 0.4 * found[0][-1][1]
+                parts += pin(bench, view.x(piece.low), view.way * (piece.facing or 1), half * view.across)
         elif isinstance(entry, Clock) and piece.radius:
             x, y = view.at(piece.low, piece.radius)
             parts.append(polygon([(x - 1.6, y), (x, y - 1.6), (x + 1.6, y), (x, y + 1.6)], fill="#555555"))
@@ -456,7 +467,7 @@ def _key(found: Review, setup: Setup, datums: Sequence[Datum]) -> list[str]:
     for datum in datums:
         text = f"{datum.letter}  {short(datum.name, SIZE, 40.0)} rules {RULES[datum.step]}: {_how(found, datum)}"
         if datum.piece is None:
-            text += "; not made yet, so not drawn"
+            text += "; not there yet, so not drawn"
         lines += wrapped(text, SIZE, WIDEST - 10.0, most=2)
     looks = "+z" if (held.looks_at_tool or 1) > 0 else "-z"
     more = [f"{looks} looks at the tool"]
@@ -489,9 +500,10 @@ def _how(found: Review, datum: Datum) -> str:
     if isinstance(entry, Square) and entry.across is not None:
         words_.append(f"on Ø{plain(found, entry.across)}")
     if isinstance(entry, Centre) and entry.clearance is not None:
-        words_.append("with clearance" + (f", rests {entry.rests}" if entry.rests else ""))
+        low, high = (as_stated(c, inches=inches) for c in entry.clearance)
+        words_.append(f"clearance {low} to {high}" + (f", rests {entry.rests}" if entry.rests else ""))
     if isinstance(entry, Centre) and entry.at is not None:
-        words_.append(f"at {plain(found, entry.at)}")
+        words_.append(f"at z {plain(found, entry.at)}")
     through = getattr(entry, "through", ())
     if through:
         words_.append("on " + ", ".join(short(t.by, SIZE, 24.0) for t in through))

@@ -79,16 +79,19 @@ def spread(places: Sequence[float], *, apart: float, low: float, high: float) ->
     return moved
 
 
-def placed(
-    labels: Sequence[Label], *, width: float, middle: float | None = None, margin: float = 4.0
-) -> list[Placed] | None:
-    """A row for every name; None where they do not go between the edges. Outer names first, so that rows climb inwards.
+def placed(labels: Sequence[Label], *, width: float, margin: float = 4.0) -> list[Placed] | None:
+    """A row for every name in as few rows as any tried way needs; None where they do not go between the edges.
 
-    middle  what they climb towards from both sides; None: the middle of the leaders
+    Outer names are placed first, so that rows climb from both sides towards a middle; every gap between leaders is tried
+    as the middle.
     """
-    if middle is None:
-        xs = sorted(label.x for label in labels) or [0.0]
-        middle = (xs[(len(xs) - 1) // 2] + xs[len(xs) // 2]) / 2.0
+    xs = sorted({label.x for label in labels})
+    middles = [0.0, *((a + b) / 2.0 for a, b in zip(xs, xs[1:], strict=False)), width]
+    tried = [done for middle in middles if (done := _climbing(labels, width, middle, margin)) is not None]
+    return min(tried, key=lambda done: (rows(done), sum(p.row for p in done)), default=None)
+
+
+def _climbing(labels: Sequence[Label], width: float, middle: float, margin: float) -> list[Placed] | None:
     done: list[Placed] = []
     for label in sorted(labels, key=lambda one: (-abs(one.x - middle), one.x, one.text)):
         found = _place(label, labels, done, width, middle, margin)

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Collection, Sequence
 from dataclasses import replace
 
 from setupcheck.flow import Review
@@ -41,14 +41,17 @@ def finished(found: Review, part: str) -> list[Piece]:
     return pieces
 
 
-def as_of(found: Review, part: str, op: int) -> list[Piece]:
-    """A part as an operation leaves it, in its own heights."""
+def as_of(found: Review, part: str, op: int, keep: Collection[tuple[str, str]] = ()) -> list[Piece]:
+    """A part as an operation leaves it, in its own heights.
+
+    keep  surfaces that are shown though this operation takes them away, as it holds on them
+    """
     when = _order(found)
     pieces = []
     for name, surface in found.loaded.job.parts[part].surfaces.items():
         gone = found.floor.removed.get((part, name))
         states = [s for s in found.floor.bodies[part].states.get((part, name), []) if _by_then(s, op, when)]
-        if states and (gone is None or when[gone] > when[op]):
+        if states and (gone is None or when[gone] > when[op] or (gone == op and (part, name) in keep)):
             pieces.append(_left(found, _piece(found, part, name, surface, states[-1].op), states[-1]))
     return pieces
 

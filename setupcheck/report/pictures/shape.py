@@ -156,6 +156,11 @@ def _outside(
         over = [p.radius or 0.0 for p in rounds if p.low <= middle <= p.high]
         over = over or [p.radius or 0.0 for p in stock if p.low <= middle <= p.high]
         found.append((max(over), max(over)) if over else None)
+    for i, beside in ((0, 1), (-1, -2)) if len(spans) > 1 else ():  # a strip before a turned end went with what was turned
+        strip, middle = spans[i], sum(spans[beside]) / 2.0
+        turned = any(p.trims and p.low == strip[0 if i == 0 else 1] for p in pieces)
+        if turned and all(not p.low <= sum(strip) / 2.0 <= p.high for p in rounds):
+            found[i] = None if any(p.low <= middle <= p.high for p in rounds) else found[i]
     known = [i for i, ends in enumerate(found) if ends is not None]
     done, unstated = [], []
     for i, (low, high) in enumerate(spans):

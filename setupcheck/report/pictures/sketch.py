@@ -100,31 +100,35 @@ def _ratio(scale: float) -> str:
 def metal(view: View, solid: Solid, *, lower: str = "seen", slope: int = 1) -> list[str]:
     """One part: upper half cut and hatched; lower half `seen` from outside or `cut` too.
 
-    slope  which way the hatch leans, so that two parts in one drawing are told apart; 0: not hatched
+    slope  which way the hatch leans, so that two parts in one drawing are told apart
     """
     if not solid.outer:
         return []
-    parts = [_hatched(view, solid, 1, slope)]
-    parts.append(polyline([view.at(z, r) for z, r in _closed(solid, cut=True)], width=OUTLINE))
-    if lower == "cut":
-        parts.append(_hatched(view, solid, -1, slope))
-    closed = _closed(solid, cut=lower == "cut")
-    parts.append(polyline([view.at(z, r, -1) for z, r in closed], width=OUTLINE))
-    edges = [(view.at(z, 0.0), view.at(z, r)) for z, r in _steps(solid.inner)]
-    if lower == "cut":
-        edges += [(view.at(z, 0.0, -1), view.at(z, r, -1)) for z, r in _steps(solid.inner)]
-    else:
-        edges += [(view.at(z, 0.0, -1), view.at(z, r, -1)) for z, r in _edges_seen(solid.outer)]
-    parts.append(lines(edges, width=OUTLINE * 0.7))
+    parts: list[str] = []
+    for sign, cut in ((1, True), (-1, lower == "cut")):
+        if cut:
+            ring = [view.at(z, r, sign) for z, r in [*solid.hatched, *reversed(solid.inner)]]
+            parts.append(hatch(ring, slope=slope))
+        for run in _outlines(solid, cut=cut):
+            parts.append(polyline([view.at(z, r, sign) for z, r in run], width=OUTLINE))
+        seen = _steps(solid.inner) if cut else _edges_seen(solid.outer)
+        parts.append(lines([(view.at(z, 0.0, sign), view.at(z, r, sign)) for z, r in seen], width=OUTLINE * 0.7))
     return [part for part in parts if part]
 
 
-def _closed(solid: Solid, *, cut: bool) -> list[Point]:
-    """The outline of one half: outside, both ends, and the bore where it is cut open."""
-    outer = list(solid.outer)
-    if cut and any(r > 0.0 for _, r in solid.inner):
-        return [*outer, *reversed(solid.inner), outer[0]]
-    return [(solid.low, 0.0), *outer, (solid.high, 0.0)]
+def _outlines(solid: Solid, *, cut: bool) -> list[list[Point]]:
+    """The lines round one half: outside with both ends, and the bore where it is cut open; none along the axis."""
+    if not cut:
+        return [[(solid.low, 0.0), *solid.outer, (solid.high, 0.0)]]
+    runs: list[list[Point]] = [[solid.inner[0], *solid.outer, solid.inner[-1]]]
+    run: list[Point] = []
+    for a, b in zip(solid.inner, solid.inner[1:], strict=False):
+        if a[1] <= 0.0 and b[1] <= 0.0:
+            runs.append(run)
+            run = []
+            continue
+        run = [*(run or [a]), b]
+    return [found for found in [*runs, run] if found]
 
 
 def _steps(profile: Sequence[Point]) -> list[Point]:
@@ -151,13 +155,6 @@ def _edges_seen(profile: Sequence[Point]) -> list[Point]:
         elif abs((r - r0) * (z2 - z) - (r2 - r) * (z - z0)) > 0.15 * math.hypot(z - z0, r - r0) * math.hypot(z2 - z, r2 - r):
             found[z] = r
     return sorted(found.items())
-
-
-def _hatched(view: View, solid: Solid, sign: int, slope: int) -> str:
-    if not slope:
-        return ""
-    ring = [view.at(z, r, sign) for z, r in [*solid.hatched, *reversed(solid.inner)]]
-    return hatch(ring, slope=slope)
 
 
 def hatch(ring: Sequence[Point], *, slope: int = 1, apart: float = HATCH) -> str:
