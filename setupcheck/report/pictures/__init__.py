@@ -32,7 +32,8 @@ def pictures(found: Review, read: ReadBack | None = None) -> dict[str, Picture]:
 
 
 def _all(found: Review, read: ReadBack | None) -> Iterator[Picture]:
-    from setupcheck.report.pictures import holdings, part
+    from setupcheck.report.pictures import head, holdings, part
 
     yield from part.offered(found)
     yield from holdings.offered(found)
+    yield from head.offered(found)

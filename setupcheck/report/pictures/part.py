@@ -93,7 +93,8 @@ def draw(found: Review, part: str) -> str:
     found_room = [
         (laid, sheet_)
         for beside in (True, False)
-        if (laid := _laid(found, pieces, body, sheet_ := _sheet(found, part, pieces, body, beside=beside))) is not None
+        if not (beside and _slim(pieces, body))
+        and (laid := _laid(found, pieces, body, sheet_ := _sheet(found, part, pieces, body, beside=beside))) is not None
     ]
     if not found_room:  # no names then
         sheet_ = _sheet(found, part, pieces, body, beside=False)
@@ -133,6 +134,12 @@ def _widest(pieces: Sequence[Piece], body: Solid) -> float:
     found = [r for _, r in body.outer] or [0.0]
     found += [p.radius + (p.size or 0.0) / 2.0 for p in pieces if p.radius and not (p.stock and body.outer)]
     return max(found)
+
+
+def _slim(pieces: Sequence[Piece], body: Solid) -> bool:
+    """A part too long for a legend beside it."""
+    low, high = _ends(pieces, body)
+    return high - low > 2.0 * _widest(pieces, body) * 1.4
 
 
 def _ends(pieces: Sequence[Piece], body: Solid) -> Point:
@@ -313,13 +320,14 @@ def _positions(found: Review, view: View, pieces: Sequence[Piece], body: Solid, 
     heights = sorted({z for p in placed_ for z in ((p.middle,) if p.kind == "teeth" else (p.low, p.high))})
     texts = [plain(found, z) for z in heights]
     apart = max(room(text, SIZE) for text in texts) / 2.0 + 1.2
-    most = int((WIDEST - 24.0) / apart)
+    most = int((WIDEST - 34.0) / apart)
     if len(heights) > most:
         every = -(-len(heights) // most)
         heights, texts = heights[::every], texts[::every]
-    xs = spread([view.x(z) for z in heights], apart=apart, low=10.0, high=WIDEST - 14.0)
-    unit = "in" if found.loaded.job.units == "in" else "mm"
-    parts = [words((4.0, bottom + 5.0), "z", size=SIZE), words((WIDEST - 4.0, bottom + 5.0), unit, size=SIZE, anchor="end")]
+    unit = "z [in]" if found.loaded.job.units == "in" else "z [mm]"
+    low = view.x(heights[0]) - 30.0  # beside a legend too
+    xs = spread([view.x(z) for z in heights], apart=apart, low=max(low, 10.0), high=WIDEST - 24.0)
+    parts = [words((xs[-1] + room(texts[-1], SIZE) / 2.0 + 3.0, bottom + 7.6), unit, size=SIZE)]
     for i, (z, text, x) in enumerate(zip(heights, texts, xs, strict=True)):
         place = view.x(z)
         start = view.y(radius_at(body.outer, z), -1) + 0.8 if body.outer else view.axis + 1.0
