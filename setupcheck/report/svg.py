@@ -52,12 +52,12 @@ def polyline(points: Iterable[Point], *, width: float = THICK, dashes: str = "",
     """An open line through points."""
     path = " ".join(f"{number(x)},{number(y)}" for x, y in points)
     more: dict[str, str | float] = {"stroke_dasharray": dashes} if dashes else {}
-    return tag(
-        "polyline", points=path, fill="none", stroke=colour, stroke_width=width, stroke_linejoin="round", **more
-    )
+    return tag("polyline", points=path, fill="none", stroke=colour, stroke_width=width, stroke_linejoin="round", **more)
 
 
-def lines(pieces: Iterable[tuple[Point, Point]], *, width: float = THIN, dashes: str = "", colour: str = "black") -> str:
+def lines(
+    pieces: Iterable[tuple[Point, Point]], *, width: float = THIN, dashes: str = "", colour: str = "black"
+) -> str:
     """Many straight lines in one element, as in a hatch; nothing where there are none."""
     path = "".join(f"M{number(a[0])} {number(a[1])}L{number(b[0])} {number(b[1])}" for a, b in pieces)
     more: dict[str, str | float] = {"stroke_dasharray": dashes} if dashes else {}
@@ -68,9 +68,7 @@ def rectangle(
     at: Point, wide: float, high: float, *, fill: str = "none", width: float = THIN, colour: str = "black"
 ) -> str:
     """An outlined rectangle by its upper left corner."""
-    return tag(
-        "rect", x=at[0], y=at[1], width=wide, height=high, fill=fill, stroke=colour, stroke_width=width
-    )
+    return tag("rect", x=at[0], y=at[1], width=wide, height=high, fill=fill, stroke=colour, stroke_width=width)
 
 
 def circle(at: Point, radius: float, *, fill: str = "none", width: float = THIN, colour: str = "black") -> str:

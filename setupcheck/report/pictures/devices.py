@@ -132,7 +132,10 @@ def under(bench: Bench, grip: Grip, *, vee: bool) -> list[str]:
 def steady(bench: Bench, grip: Grip) -> list[str]:
     """Fingers of a steady on both sides."""
     x = (grip.left + grip.right) / 2.0
-    return [rectangle((x - 1.2, bench.axis - grip.half - (6.0 if s > 0 else -2.0 * grip.half)), 2.4, 6.0, fill=GREY) for s in (1, -1)]
+    return [
+        rectangle((x - 1.2, bench.axis - grip.half - (6.0 if s > 0 else -2.0 * grip.half)), 2.4, 6.0, fill=GREY)
+        for s in (1, -1)
+    ]
 
 
 def plate(bench: Bench, half: float) -> list[str]:

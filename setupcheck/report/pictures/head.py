@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import math
 from collections.abc import Iterator, Sequence
+from functools import partial
 
 from setupcheck.flow import Review
 from setupcheck.jobfile.setups import Head, Setup
@@ -44,7 +45,7 @@ def offered(found: Review) -> Iterator[Picture]:
     """The head of every setup that sets one."""
     for setup in found.loaded.job.setups:
         if setup.head is not None:
-            yield Picture(f"head-{setup.op}", _title(setup), lambda setup=setup: draw(found, setup))  # type: ignore[misc]
+            yield Picture(f"head-{setup.op}", _title(setup), partial(draw, found, setup))
 
 
 def _title(setup: Setup) -> str:
@@ -196,7 +197,7 @@ class _View:
         self.lean = stand.lean if stand.lean is not None and _turns(stand) else side
         self.across = stand.seen(self.lean)
         offset = 8.0
-        self.pivot = (62.0 - self.n[0] * offset, TOP + 37.0 + self.n[1] * offset)
+        self.pivot = (62.0 - self.n[0] * offset, TOP + 37.0 + (offset if self.n[1] > 0.0 else 0.0))
 
     def at(self, a: float, b: float, *, leaned: bool = True) -> Point:
         c, s = (math.cos(self.angle), math.sin(self.angle)) if leaned else (1.0, 0.0)
@@ -235,10 +236,10 @@ def _gaps(view: _View, hand: str | None, lead: float) -> list[str]:
 
 def _axes(view: _View, head: Head) -> list[str]:
     """Axis as it lies level and leaned, the cutter's spindle, the arc with its arrow and the true angle."""
-    reach = WHEEL + FACE + 16.0
+    reach = WHEEL + FACE + 10.0
     parts = [
-        line(view.at(-BODY - 4.0, 0.0, leaned=False), view.at(reach, 0.0, leaned=False), width=0.18, dashes="1.4 1"),
-        line(view.at(-BODY - 4.0, 0.0), view.at(reach, 0.0), width=0.3, dashes=AXIS_DASHES),
+        line(view.at(-BODY - 2.0, 0.0, leaned=False), view.at(reach, 0.0, leaned=False), width=0.18, dashes="1.4 1"),
+        line(view.at(-BODY - 2.0, 0.0), view.at(reach, 0.0), width=0.3, dashes=AXIS_DASHES),
     ]
     wheel = view.at(WHEEL, 0.0)
     ends = [(wheel[0] + s * 26.0 * view.across[0], wheel[1] - s * 26.0 * view.across[1]) for s in (-1.0, 1.0)]
@@ -246,7 +247,7 @@ def _axes(view: _View, head: Head) -> list[str]:
     low = max(ends, key=lambda end: (round(end[1], 3), end[0]))
     parts.append(words((low[0] + 1.5, low[1] + 1.0), "cutter's spindle", size=SIZE))
     if view.angle > 0.0:
-        radius = WHEEL + FACE + 9.0
+        radius = WHEEL + FACE + 6.0
         turned = _View(view.stand, 0.0)
         arc = []
         for i in range(13):
@@ -256,7 +257,10 @@ def _axes(view: _View, head: Head) -> list[str]:
         parts.append(_arrow(arc[-3], arc[-1]))
         turned.angle = view.angle * 0.5
         x, y = turned.at(radius + 3.0, 0.0)
-        anchor = "end" if view.n[0] < 0.0 else "start" if view.n[0] > 0.0 else "middle"
+        side = view.n[0] or view.across[0]
+        if not view.n[0]:  # an upright axis: beside both
+            x, y = arc[-1][0] + 2.0 * side, arc[-1][1]
+        anchor = "end" if side < 0.0 else "start"
         parts.append(words((x, y + 1.0), show_angle(abs(head.tilt), "dms", 0), size=SIZE, anchor=anchor))
     return parts
 
@@ -270,7 +274,7 @@ def _arrow(tail: Point, tip: Point) -> str:
 
 def _bench(stand: Stand, setup: Setup, found: Review) -> list[str]:
     """The table where it is seen from the side, and what the view is."""
-    name, machine = machine_of(found.loaded, setup)
+    _name, machine = machine_of(found.loaded, setup)
     cutter = machine.cutter_stands if machine is not None else ""
     leans = setup.head.leans if setup.head is not None else None
     texts = [f"you stand on the cutter's side ({cutter})" if cutter != "above" else "you look down, as the cutter does"]
@@ -301,7 +305,9 @@ def _plan(stand: Stand, leans: str) -> list[str]:
     if n != (0, 0):
         parts += [line(head, wheel, width=0.5), _arrow(head, (wheel[0] - 1.5 * n[0], wheel[1] + 1.5 * n[1]))]
         half = (4.5 * abs(n[1]) + 1.2 * abs(n[0]), 4.5 * abs(n[0]) + 1.2 * abs(n[1]))
-        parts.append(rectangle((wheel[0] - half[0], wheel[1] - half[1]), 2.0 * half[0], 2.0 * half[1], fill="white", width=0.35))
+        parts.append(
+            rectangle((wheel[0] - half[0], wheel[1] - half[1]), 2.0 * half[0], 2.0 * half[1], fill="white", width=0.35)
+        )
     else:
         parts += [circle(wheel, 4.5, width=0.35)]
     c = (stand.cutter[0], stand.cutter[1])

@@ -3,39 +3,22 @@
 from __future__ import annotations
 
 from collections.abc import Iterator, Sequence
+from functools import partial
 
 from setupcheck.flow import Review
-from setupcheck.jobfile.models import Deviation
-from setupcheck.jobfile.setups import Centre, Clock, Setup, Square, Stop
+from setupcheck.jobfile.models import Deviation, Dimension
+from setupcheck.jobfile.setups import Centre, Clock, Setup, Square
 from setupcheck.quantities.route import machine_of
-from setupcheck.record import record
 from setupcheck.report.pictures import WIDEST, Picture
-from setupcheck.report.pictures.devices import (
-    ARBORS,
-    DIALS,
-    JAWS,
-    TRIANGLE,
-    Bench,
-    Grip,
-    arbor,
-    centre_point,
-    chuck,
-    dial,
-    jaws,
-    pin,
-    plate,
-    rest,
-    steady,
-    triangle,
-    under,
-)
-from setupcheck.report.pictures.labels import ROW, SIZE, Label, Placed, drawn, placed, rows
+from setupcheck.report.pictures.devices import TRIANGLE, triangle
+from setupcheck.report.pictures.fixing import Datum, Scene, before, behind, ends_of, reach_of
+from setupcheck.report.pictures.labels import ROW, SIZE, Label, Placed, drawn, placed, rows, spread
 from setupcheck.report.pictures.marks import mark_of, plain, short, stated_size, wrapped
 from setupcheck.report.pictures.part import anchor, named, pattern_lines, z_arrow
-from setupcheck.report.pictures.pieces import as_of, extent, held_part, holding, ref_held, refs_cut, together, way
-from setupcheck.report.pictures.shape import Piece, Point, Solid, radius_at, solid
+from setupcheck.report.pictures.pieces import as_of, held_part, holding, ref_held, refs_cut, together, way
+from setupcheck.report.pictures.shape import Piece, Point, Solid, solid
 from setupcheck.report.pictures.sketch import View, fitted, metal, pitch_line, runs, sheet, stroke, told
-from setupcheck.report.svg import line, polygon, words
+from setupcheck.report.svg import line, words
 from setupcheck.report.wording import as_stated
 
 TALLEST = 120.0
@@ -59,8 +42,6 @@ RULES = {
 }
 """What each datum of a hold rules, in words."""
 
-Entry = Centre | Square | Stop | Clock
-
 
 def offered(found: Review) -> Iterator[Picture]:
     """The holding of every setup; joinings stand in `joins`."""
@@ -68,43 +49,15 @@ def offered(found: Review) -> Iterator[Picture]:
 
     for setup in found.loaded.job.setups:
         if setup.join is not None:
-            yield Picture(f"hold-{setup.op}", joins.title(found, setup), lambda setup=setup: joins.draw(found, setup))  # type: ignore[misc]
+            yield Picture(f"hold-{setup.op}", joins.title(found, setup), partial(joins.draw, found, setup))
         else:
-            yield Picture(f"hold-{setup.op}", _title(found, setup), lambda setup=setup: draw(found, setup))  # type: ignore[misc]
+            yield Picture(f"hold-{setup.op}", _title(found, setup), partial(draw, found, setup))
 
 
 def _title(found: Review, setup: Setup) -> str:
     machine = f" on {short(setup.machine, 3.8, 50.0)}" if setup.machine else ""
-    kept = f", in the holding of op {setup.keeps}, never opened" if setup.keeps is not None else ""
+    kept = f", as in op {setup.keeps}, never opened" if setup.keeps is not None else ""
     return f"op {setup.op}: how {short(held_part(found, setup), 3.8, 40.0)} is held{machine}{kept}"
-
-
-@record
-class Datum:
-    """A datum of the hold: its letter, step, entry and the surface in the held part's heights, None where it is not there yet."""
-
-    letter: str
-    step: str
-    entry: Entry
-    name: str
-    piece: Piece | None
-
-
-@record
-class Scene:
-    """What is drawn: the bodies held, their surfaces in the held part's heights, the view and the datums."""
-
-    pieces: tuple[tuple[Piece, ...], ...]
-    solids: tuple[Solid, ...]
-    view: View
-    datums: tuple[Datum, ...]
-
-    def of(self, piece: Piece) -> tuple[Solid, tuple[Piece, ...]]:
-        """The body that a surface is on."""
-        for body, pieces in zip(self.solids, self.pieces, strict=True):
-            if pieces and pieces[0].part == piece.part:
-                return body, pieces
-        return self.solids[0], self.pieces[0]
 
 
 def draw(found: Review, setup: Setup) -> str:
@@ -118,19 +71,23 @@ def draw(found: Review, setup: Setup) -> str:
     shown = [pieces for pieces in shown if pieces]
     solids = tuple(solid(pieces) for pieces in shown)
     if not any(body.outer for body in solids):
-        return told(WIDEST, _title(found, setup), ["not drawn: no outside diameter stated of what is held", *_key(found, setup, ())])
+        return told(
+            WIDEST,
+            _title(found, setup),
+            ["not drawn: no outside diameter stated of what is held", *_key(found, setup, ())],
+        )
     held = holding(found, setup)
-    datums = tuple(_datums(found, held, shown, solids))
+    datums = tuple(_datums(found, held, shown))
     key = _key(found, setup, datums)
     below = KEY * len(key) + 5.0
     scene, top, bottom = _laid(found, setup, shown, solids, datums, below)
     view = scene.view
-    reach = _reach(scene) * view.across
-    parts = [*_devices(scene, held)]
+    reach = reach_of(scene) * view.across
+    parts = [*behind(scene)]
     for i, body in enumerate(solids):
         parts += metal(view, body, lower="cut", slope=1 if i % 2 == 0 else -1)
     parts += _patterns(scene)
-    parts += _front_devices(scene)
+    parts += before(scene)
     parts += _cut_lines(found, setup, scene)
     parts += _surroundings(found, setup, view)
     parts += [triangle(*_stand(scene, d)) for d in datums if d.piece is not None and _path(scene, d) is not None]
@@ -165,7 +122,7 @@ def _laid(
         over = TOP + 2.0
         for _ in range(3):
             top = placed(_cut_labels(found, setup, scene), width=WIDEST) or []
-            axis = over + rows(top) * ROW + 8.0 + _reach(scene) * scene.view.across
+            axis = over + rows(top) * ROW + 8.0 + reach_of(scene) * scene.view.across
             scene = _at_axis(scene, axis)
         bottom = placed(_datum_labels(scene), width=WIDEST) or []
         if rows(top) + rows(bottom) <= count:
@@ -187,7 +144,7 @@ def _scene(
     datums: tuple[Datum, ...],
     tall: float,
 ) -> Scene:
-    low, high = _ends(shown, solids)
+    low, high = ends_of(shown, solids)
     radius = max(r for body in solids for _, r in body.outer)
     wide = WIDEST - LEFT - RIGHT
     along, across = fitted(low, high, radius, wide=wide, tall=tall)
@@ -197,18 +154,7 @@ def _scene(
     return Scene(tuple(shown), solids, view, datums)
 
 
-def _ends(shown: Sequence[tuple[Piece, ...]], solids: Sequence[Solid]) -> Point:
-    ends = [(body.low, body.high) for body in solids if body.outer] or [extent(shown[0])]
-    return min(low for low, _ in ends), max(high for _, high in ends)
-
-
-def _reach(scene: Scene) -> float:
-    return max(r for body in scene.solids for _, r in body.outer)
-
-
-def _datums(
-    found: Review, held: Setup, shown: Sequence[tuple[Piece, ...]], solids: Sequence[Solid]
-) -> Iterator[Datum]:
+def _datums(found: Review, held: Setup, shown: Sequence[tuple[Piece, ...]]) -> Iterator[Datum]:
     letters = iter("ABCDE")
     for step in RULES:
         entry = getattr(held.hold, step, None) if held.hold is not None else None
@@ -217,132 +163,6 @@ def _datums(
         ref = ref_held(found, held, entry.on)
         piece = next((p for pieces in shown for p in pieces if (p.part, p.name) == (ref.part, ref.surface)), None)
         yield Datum(next(letters), step, entry, entry.on, piece)
-
-
-# -- what holds ------------------------------------------------------------------------------------------------------
-
-
-def _bench(scene: Scene) -> Bench:
-    view = scene.view
-    low, high = _ends(scene.pieces, scene.solids)
-    left, right = sorted((view.x(low), view.x(high)))
-    return Bench(view.axis, left, right, left - 7.0, _reach(scene) * view.across)
-
-
-def _grip(scene: Scene, datum: Datum) -> Grip | None:
-    """Where a device takes hold of a surface."""
-    piece, entry, view = datum.piece, datum.entry, scene.view
-    if piece is None or not piece.radius or not isinstance(entry, Centre):
-        return None
-    left, right = sorted((view.x(piece.low), view.x(piece.high)))
-    if entry.grip is not None and datum.step == "centre":
-        ends = sorted((view.x(entry.grip.low), view.x(entry.grip.high)))
-        left, right = max(left, ends[0]), min(right, ends[1])
-    elif entry.at is not None:
-        x = view.x(entry.at)
-        left, right = max(left, x - 4.0), min(right, x + 4.0)
-    else:
-        right = min(right, left + max(0.5 * (right - left), 6.0))
-    if right <= left:
-        left, right = left, left + 3.0
-    body, _ = scene.of(piece)
-    before = max(
-        (r * view.across for z, r in body.outer if view.x(z) <= left + 1e-6 and piece.kind != "bore"), default=0.0
-    )
-    return Grip(left, right, piece.radius * view.across, before, piece.kind == "bore")
-
-
-def _devices(scene: Scene, held: Setup) -> list[str]:
-    """What stands behind the part in the drawing."""
-    bench = _bench(scene)
-    first = next((d for d in scene.datums if d.step == "centre"), None)
-    second = next((d for d in scene.datums if d.step == "and_centre"), None)
-    parts: list[str] = []
-    carried = False
-    for datum in (first, second):
-        if datum is None or not isinstance(datum.entry, Centre):
-            continue
-        grip = _grip(scene, datum)
-        by = datum.entry.by
-        if datum is second and first is not None and isinstance(first.entry, Centre) and first.entry.by == by and by != "centres":
-            continue  # one device, two planes
-        if by in JAWS and grip is not None:
-            parts += jaws(bench, grip)
-            carried = True
-        elif by in ARBORS and grip is not None:
-            planes = second is not None
-            parts += arbor(bench, grip, by=by, through=planes or by.endswith("mandrel"))
-            carried = True
-            if any(t.by == "centres" for t in datum.entry.through) and grip.inner:
-                parts += centre_point(bench, bench.right + 7.0, 1, grip.half * 0.4)
-        elif by == "vee-block" and grip is not None:
-            parts += under(bench, grip, vee=True)
-        elif by in ("fixture",) and grip is not None:
-            parts += under(bench, grip, vee=False)
-        elif by == "steady" and grip is not None:
-            parts += steady(bench, grip)
-        elif by in ("faceplate", "magnetic-chuck"):
-            parts += plate(bench, bench.reach)
-            carried = True
-    for datum in scene.datums:
-        if isinstance(datum.entry, Square) and datum.piece is not None:
-            parts += _rested(scene, bench, datum)
-            carried = True
-    grips = [grip for d in scene.datums if (grip := _grip(scene, d)) is not None and not grip.inner]
-    half = max([0.75 * bench.reach, 9.0, *(max(g.half, g.before) + 6.0 for g in grips)])
-    return [*(chuck(bench, min(half, bench.reach + 7.5)) if carried else []), *parts]
-
-
-def _front_devices(scene: Scene) -> list[str]:
-    """What stands before the part: centres in its ends, dials, stops, the pin that rules the angle."""
-    bench, view = _bench(scene), scene.view
-    parts: list[str] = []
-    for datum in scene.datums:
-        piece, entry = datum.piece, datum.entry
-        if piece is None:
-            continue
-        body, _ = scene.of(piece)
-        if isinstance(entry, Centre) and entry.by == "centres":
-            outward = view.way * piece.facing if piece.facing else (-1 if view.x(piece.middle) < (bench.left + bench.right) / 2.0 else 1)
-            x = view.x(piece.low) if piece.facing else (bench.left if outward < 0 else bench.right)
-            parts += centre_point(bench, x, outward, 0.2 * radius_at(body.outer, piece.low) * view.across)
-        elif isinstance(entry, Centre) and entry.by in DIALS and piece.radius:
-            parts += _dialled(scene, bench, datum)
-        elif isinstance(entry, Stop):
-            found = runs(piece, body, scene.of(piece)[1])
-            if found and not any(d.piece == piece and d is not datum for d in scene.datums):
-                half = entry.radius or 0.6 * found[0][0][1] + 0.4 * found[0][-1][1]
-                parts += pin(bench, view.x(piece.low), view.way * (piece.facing or 1), half * view.across)
-        elif isinstance(entry, Clock) and piece.radius:
-            x, y = view.at(piece.low, piece.radius)
-            parts.append(polygon([(x - 1.6, y), (x, y - 1.6), (x + 1.6, y), (x, y + 1.6)], fill="#555555"))
-    return parts
-
-
-def _dialled(scene: Scene, bench: Bench, datum: Datum) -> list[str]:
-    piece, view = datum.piece, scene.view
-    assert piece is not None and piece.radius is not None and isinstance(datum.entry, Centre)
-    at = datum.entry.at if datum.entry.at is not None else piece.middle
-    touched = view.at(at, piece.radius)
-    if piece.kind == "bore":
-        return dial(touched, (bench.right + 9.0, touched[1] + min(4.5, 0.7 * piece.radius * view.across)))
-    return dial(touched, (touched[0] + 2.0, touched[1] - 6.0))
-
-
-def _rested(scene: Scene, bench: Bench, datum: Datum) -> list[str]:
-    piece, view, entry = datum.piece, scene.view, datum.entry
-    assert piece is not None and isinstance(entry, Square)
-    body, pieces = scene.of(piece)
-    found = runs(piece, body, pieces)
-    if not found:
-        return []
-    inner, outer = found[0][0][1] * view.across, found[0][-1][1] * view.across
-    if entry.by in ("indicator", "edge-finder"):
-        x, y = view.x(piece.low), view.axis - (inner + 0.7 * (outer - inner))
-        return dial((x, y), (x + view.way * piece.facing * 7.0, y - 2.0))
-    return rest(
-        bench, view.x(piece.low), view.way * piece.facing, (inner + 0.35 * (outer - inner), outer), thin=entry.by == "parallels"
-    )
 
 
 # -- what is cut, datums, words --------------------------------------------------------------------------------------
@@ -394,7 +214,8 @@ def _as_left(found: Review, setup: Setup, piece: Piece) -> str:
         return f"{name} at {plain(found, piece.low)}{rough}"
     if piece.kind in ("teeth", "holes", "slot"):
         return f"{name}{rough}"
-    drawn_at = getattr(surface.diameter, "value", surface.diameter) if hasattr(surface, "diameter") else None
+    stated = getattr(surface, "diameter", None)
+    drawn_at = stated.value if isinstance(stated, Dimension) else stated
     size = 2.0 * (piece.radius or 0.0)
     as_drawn = drawn_at is not None and abs(size - drawn_at) < 1e-9
     return f"{name} Ø{short(stated_size(found, piece.part, piece.name), SIZE, 30.0) if as_drawn else plain(found, size)}{rough}"
@@ -428,8 +249,6 @@ def _stand(scene: Scene, datum: Datum) -> tuple[Point, Point]:
 
 
 def _datum_labels(scene: Scene) -> list[Label]:
-    from setupcheck.report.pictures.labels import spread
-
     found = [(d, path) for d in scene.datums if (path := _path(scene, d)) is not None]
     same: dict[str, list[Datum]] = {}
     for datum, _ in found:
@@ -437,7 +256,7 @@ def _datum_labels(scene: Scene) -> list[Label]:
     first = [(d, path) for d, path in found if same[f"{d.piece}/{getattr(d.entry, 'at', None)}"][0] is d]
     xs = spread([path[-1][0] for _, path in first], apart=2.4, low=8.0, high=WIDEST - 8.0)
     labels = []
-    for (datum, path), x in zip(first, xs, strict=True):
+    for (datum, _), x in zip(first, xs, strict=True):
         letters = ", ".join(d.letter for d in same[f"{datum.piece}/{getattr(datum.entry, 'at', None)}"])
         base, towards = _stand(scene, datum)
         tip = (base[0] + towards[0] * TRIANGLE, base[1] + towards[1] * TRIANGLE)
@@ -450,12 +269,11 @@ def _surroundings(found: Review, setup: Setup, view: View) -> list[str]:
     """Machine axis, words at both ends, which way the part's heights run."""
     y = view.axis
     parts = [
-        line((18.0, y), (WIDEST - 18.0, y), width=0.25, dashes="6 1.2 0.8 1.2"),
+        line((18.0, y), (WIDEST - 23.0, y), width=0.25, dashes="6 1.2 0.8 1.2"),
         words((3.0, y + 1.0), "spindle", size=SIZE),
         words((WIDEST - 3.0, y + 1.0), "tool side", size=SIZE, anchor="end"),
         words((WIDEST - 3.0, y + 5.4), "machine axis", size=SIZE, anchor="end"),
     ]
-    parts[2] = words((WIDEST - 3.0, y + 1.0), "tool side", size=SIZE, anchor="end")
     x = WIDEST - 16.0
     return [*parts, *z_arrow(x - view.way * 3.5, y + 9.5, view.way)]
 

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import itertools
 from collections.abc import Sequence
 from dataclasses import replace
 
@@ -11,7 +12,7 @@ from setupcheck.jobfile.setups import Join, Setup
 from setupcheck.notation import show
 from setupcheck.record import record
 from setupcheck.report.pictures import WIDEST
-from setupcheck.report.pictures.labels import ROW, SIZE, Label, Placed, drawn, placed, rows
+from setupcheck.report.pictures.labels import ROW, SIZE, Label, Placed, drawn, placed, rows, spread
 from setupcheck.report.pictures.marks import Mark, plain, short, stated_size, wrapped
 from setupcheck.report.pictures.part import anchor, named, pattern_lines, z_arrow
 from setupcheck.report.pictures.pieces import as_of, together, way
@@ -64,8 +65,10 @@ def draw(found: Review, setup: Setup) -> str:
     view, top, bottom = _laid(found, setup, sides, below)
     reach = _reach(sides) * view.across
     parts: list[str] = []
-    for i, side in enumerate(sides):
-        parts += metal(view, side.body, lower="cut", slope=1 if side.pieces and side.pieces[0].part == outer.part else -1)
+    for _i, side in enumerate(sides):
+        parts += metal(
+            view, side.body, lower="cut", slope=1 if side.pieces and side.pieces[0].part == outer.part else -1
+        )
         parts += [_broken(view, side.body, z) for z in side.cut_off]
     parts += _fitting(found, setup, sides, view)
     parts += [part for side in sides for p in side.pieces for part in pattern_lines(view, p, side.body, "black")]
@@ -123,7 +126,7 @@ def _broken(view: View, body: Solid, z: float) -> str:
     x, top = view.x(z), view.axis - radius
     points = [(x + (0.9 if i % 2 else -0.9), top + 2.0 * radius * i / 12.0) for i in range(13)]
     return lines([((x, top), (x, top + 2.0 * radius))], width=0.8, colour="white") + lines(
-        list(zip(points, points[1:], strict=False)), width=0.25
+        list(itertools.pairwise(points)), width=0.25
     )
 
 
@@ -136,9 +139,7 @@ def _reach(sides: Sequence[Side]) -> float:
     return max(r for side in sides for _, r in side.body.outer)
 
 
-def _laid(
-    found: Review, setup: Setup, sides: Sequence[Side], below: float
-) -> tuple[View, list[Placed], list[Placed]]:
+def _laid(found: Review, setup: Setup, sides: Sequence[Side], below: float) -> tuple[View, list[Placed], list[Placed]]:
     low, high = _ends(sides)
     count = 2
     for _ in range(8):
@@ -204,8 +205,6 @@ def _labels(found: Review, setup: Setup, sides: Sequence[Side], view: View, *, f
 
 def _apart(labels: list[Label]) -> list[Label]:
     """Leaders moved apart where they would run on one line."""
-    from setupcheck.report.pictures.labels import spread
-
     xs = spread([label.x for label in labels], apart=2.6, low=8.0, high=WIDEST - 8.0)
     found = []
     for label, x in zip(labels, xs, strict=True):
@@ -290,8 +289,8 @@ def _heat(join: Join) -> str:
     heat = join.heat
     assert heat is not None
     told_of = []
-    if getattr(heat, "hub", None) is not None:
-        told_of.append(f"hub {show(heat.hub, 'degC', 0)}" + (f" by {heat.by}" if getattr(heat, "by", None) else ""))
-    if getattr(heat, "shaft", None) is not None:
-        told_of.append(f"shaft {show(heat.shaft, 'degC', 0)}")
-    return f"hot: {', '.join(told_of)}" if told_of else "heat stated without a temperature"
+    if heat.hub is not None:
+        told_of.append(f"hub {show(heat.hub, 'degC', 0)}" + (f" by {heat.by}" if heat.by else ""))
+    if heat.shaft is not None:
+        told_of.append(f"shaft {show(heat.shaft, 'degC', 0)}" + (f" by {heat.cold_by}" if heat.cold_by else ""))
+    return ", ".join(told_of) if told_of else "heat stated without a temperature"

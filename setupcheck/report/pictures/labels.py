@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import itertools
 from collections.abc import Sequence
 
 from setupcheck.record import record
@@ -86,7 +87,7 @@ def placed(labels: Sequence[Label], *, width: float, margin: float = 4.0) -> lis
     as the middle.
     """
     xs = sorted({label.x for label in labels})
-    middles = [0.0, *((a + b) / 2.0 for a, b in zip(xs, xs[1:], strict=False)), width]
+    middles = [0.0, *((a + b) / 2.0 for a, b in itertools.pairwise(xs)), width]
     tried = [done for middle in middles if (done := _climbing(labels, width, middle, margin)) is not None]
     return min(tried, key=lambda done: (rows(done), sum(p.row for p in done)), default=None)
 

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Iterator, Sequence
 from dataclasses import replace
+from functools import partial
 
 from setupcheck.flow import Review
 from setupcheck.record import record
@@ -59,7 +60,7 @@ FAR = 2.4
 def offered(found: Review) -> Iterator[Picture]:
     """The drawing of every part."""
     for part in found.loaded.job.parts:
-        yield Picture(f"part-{part}", _title(found, part), lambda part=part: draw(found, part))  # type: ignore[misc]
+        yield Picture(f"part-{part}", _title(found, part), partial(draw, found, part))
 
 
 def _title(found: Review, part: str) -> str:
@@ -119,7 +120,9 @@ def draw(found: Review, part: str) -> str:
     else:
         parts += _drawn_legend(sheet_.legend, y)
         y += LEGEND * len(sheet_.legend)
-    parts += [words((5.0, y + 3.0 + LEGEND * i), text, size=SIZE) for i, text in enumerate([view.scale(), *sheet_.notes])]
+    parts += [
+        words((5.0, y + 3.0 + LEGEND * i), text, size=SIZE) for i, text in enumerate([view.scale(), *sheet_.notes])
+    ]
     return sheet(WIDEST, y + 6.0 + LEGEND * len(sheet_.notes), title=_title(found, part), parts=parts)
 
 
@@ -132,7 +135,11 @@ def _sheet(found: Review, part: str, pieces: Sequence[Piece], body: Solid, *, be
 def _widest(pieces: Sequence[Piece], body: Solid) -> float:
     """Largest radius drawn; a bore alone counts, stock around a finished outside does not."""
     found = [r for _, r in body.outer] or [0.0]
-    found += [p.radius + (p.size or 0.0) / 2.0 for p in pieces if p.radius and not (p.stock and body.outer)]
+    found += [
+        p.radius + (p.size or 0.0) / 2.0 + 0.2 * (p.hollow or 0.0)
+        for p in pieces
+        if p.radius and not (p.stock and body.outer)
+    ]
     return max(found)
 
 
@@ -148,15 +155,13 @@ def _ends(pieces: Sequence[Piece], body: Solid) -> Point:
 
 def _view(pieces: Sequence[Piece], body: Solid, sheet_: _Sheet, *, wide: float, above: float) -> View:
     low, high = _ends(pieces, body)
-    tall = max(TALLEST - above - sheet_.below - 4.0, 20.0)
+    tall = max(TALLEST - above - sheet_.below - 6.0, 20.0)
     along, across = fitted(low, high, _widest(pieces, body), wide=wide, tall=tall)
     left = BESIDE if sheet_.beside else 0.0
     return View(along, across, left + (WIDEST - left - along * (high - low)) / 2.0, 0.0, low)
 
 
-def _laid(
-    found: Review, pieces: Sequence[Piece], body: Solid, sheet_: _Sheet
-) -> tuple[View, list[Placed]] | None:
+def _laid(found: Review, pieces: Sequence[Piece], body: Solid, sheet_: _Sheet) -> tuple[View, list[Placed]] | None:
     """The largest view whose names have room, with their places; None where they have not."""
     for wide, label in TRIES:
         if sheet_.beside and wide > WIDEST - BESIDE - 30.0:
@@ -220,9 +225,7 @@ def _moved(path: tuple[Point, ...], x: float, sign: int) -> tuple[Point, ...]:
     return (path[0], (x, path[0][1] - sign * 2.0))
 
 
-def anchor(
-    piece: Piece, view: View, body: Solid, pieces: Sequence[Piece], sign: int = 1
-) -> tuple[Point, ...] | None:
+def anchor(piece: Piece, view: View, body: Solid, pieces: Sequence[Piece], sign: int = 1) -> tuple[Point, ...] | None:
     """Where a leader meets a surface, and where it goes up from; None for a surface that is not drawn."""
     found = runs(piece, body, pieces) or pitch_line(piece, view)
     if piece.kind == "teeth" and piece.radius:
@@ -348,7 +351,9 @@ def _legend(found: Review, part: str, wide: float) -> list[tuple[Mark | None, st
         mark = finished_by(found, part, name)
         states = found.floor.bodies[part].states.get((part, name), [])
         rough = " (rough)" if states and states[-1].rough else ""
-        told = f"{short(name, SIZE, 40.0)}{rough}" if gone is None else f"{short(name, SIZE, 40.0)} (removed in op {gone})"
+        told = (
+            f"{short(name, SIZE, 40.0)}{rough}" if gone is None else f"{short(name, SIZE, 40.0)} (removed in op {gone})"
+        )
         groups.setdefault(mark, []).append(told)
     legend: list[tuple[Mark | None, str]] = []
     ordered = sorted(groups, key=lambda m: (m.flag.isdigit(), int(m.flag) if m.flag.isdigit() else 0, m.flag))
@@ -388,4 +393,6 @@ def _notes(pieces: Sequence[Piece], body: Solid) -> list[str]:
 
 
 def _buried(piece: Piece, body: Solid) -> bool:
-    return all(radius_at(body.outer, z) > (piece.radius or 0.0) * (1.0 + 1e-6) for z in (piece.low, piece.middle, piece.high))
+    return all(
+        radius_at(body.outer, z) > (piece.radius or 0.0) * (1.0 + 1e-6) for z in (piece.low, piece.middle, piece.high)
+    )

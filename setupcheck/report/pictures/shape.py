@@ -5,6 +5,7 @@ A part is a body of revolution here: heights along its axis, radii from it. Step
 
 from __future__ import annotations
 
+import itertools
 import math
 from collections.abc import Iterator, Sequence
 
@@ -98,7 +99,7 @@ def solid(pieces: Sequence[Piece]) -> Solid:
             step = (teeth.high - teeth.low) / SAMPLES
             cuts |= {z for i in range(SAMPLES + 1) if low < (z := teeth.low + i * step) < high}
     heights = _apart(sorted({low, high, *cuts}), high - low)
-    spans = list(zip(heights, heights[1:], strict=False))
+    spans = list(itertools.pairwise(heights))
     outside, unstated = _outside(spans, rounds, stock, pieces)
     outside = [_less_hollows(span, ends, pieces) for span, ends in zip(spans, outside, strict=True)]
     hatched = [_less_teeth(span, ends, pieces) for span, ends in zip(spans, outside, strict=True)]
@@ -114,7 +115,7 @@ def solid(pieces: Sequence[Piece]) -> Solid:
 def radius_at(profile: Sequence[Point], z: float, *, side: int = 0) -> float:
     """Radius of a profile at a height: the larger one of a step, or that on one side of it (-1 below, +1 above)."""
     found = []
-    for (z1, r1), (z2, r2) in zip(profile, profile[1:], strict=False):
+    for (z1, r1), (z2, r2) in itertools.pairwise(profile):
         if z2 <= z1 or not z1 <= z <= z2 or (side > 0 and z >= z2) or (side < 0 and z <= z1):
             continue
         found.append(r1 + (r2 - r1) * (z - z1) / (z2 - z1))
@@ -156,7 +157,9 @@ def _outside(
         over = [p.radius or 0.0 for p in rounds if p.low <= middle <= p.high]
         over = over or [p.radius or 0.0 for p in stock if p.low <= middle <= p.high]
         found.append((max(over), max(over)) if over else None)
-    for i, beside in ((0, 1), (-1, -2)) if len(spans) > 1 else ():  # a strip before a turned end went with what was turned
+    for i, beside in (
+        ((0, 1), (-1, -2)) if len(spans) > 1 else ()
+    ):  # a strip before a turned end went with what was turned
         strip, middle = spans[i], sum(spans[beside]) / 2.0
         turned = any(p.trims and p.low == strip[0 if i == 0 else 1] for p in pieces)
         if turned and all(not p.low <= sum(strip) / 2.0 <= p.high for p in rounds):
@@ -168,7 +171,10 @@ def _outside(
         if ends is None:
             before, after = [k for k in known if k < i], [k for k in known if k > i]
             left, right = (before[-1] if before else None), (after[0] if after else None)
-            stretch = (spans[left][1] if left is not None else spans[0][0], spans[right][0] if right is not None else spans[-1][1])
+            stretch = (
+                spans[left][1] if left is not None else spans[0][0],
+                spans[right][0] if right is not None else spans[-1][1],
+            )
             ends = _bridged(
                 stretch,
                 _radius(found, left),
@@ -186,9 +192,7 @@ def _radius(found: Sequence[Point | None], at: int | None) -> float | None:
     return ends[0] if ends is not None else None
 
 
-def _bridged(
-    stretch: Point, left: float | None, right: float | None, pieces: Sequence[Piece], span: Point
-) -> Point:
+def _bridged(stretch: Point, left: float | None, right: float | None, pieces: Sequence[Piece], span: Point) -> Point:
     """A stretch between two outsides: as wide as the faces that end it, straight, or a chamfer to a smaller face."""
     low, high = stretch
     near = [p.radius for p in pieces if p.kind == "face" and p.facing < 0 and p.low == low and p.radius]

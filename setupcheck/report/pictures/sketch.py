@@ -1,7 +1,8 @@
-"""A section on paper: the scale that fits, metal with its hatch, the line of each surface. Heights and radii in mm, paper in mm."""
+"""A section on paper: the scale that fits, metal with its hatch, the line of each surface. Sizes and paper in mm."""
 
 from __future__ import annotations
 
+import itertools
 import math
 from collections.abc import Iterable, Sequence
 
@@ -135,8 +136,8 @@ def _steps(profile: Sequence[Point]) -> list[Point]:
     """Heights where a bore begins, ends or changes, with the larger radius there: edges seen behind the section."""
     if not any(r > 0.0 for _, r in profile):
         return []
-    found = {}
-    inner = [(z1, max(r1, r2)) for (z1, r1), (z2, r2) in zip(profile, profile[1:], strict=False) if z1 == z2]
+    found: dict[float, float] = {}
+    inner = [(z1, max(r1, r2)) for (z1, r1), (z2, r2) in itertools.pairwise(profile) if z1 == z2]
     for z, r in [profile[0], *inner, profile[-1]]:
         if r > 0.0:
             found[z] = max(r, found.get(z, 0.0))
@@ -145,14 +146,16 @@ def _steps(profile: Sequence[Point]) -> list[Point]:
 
 def _edges_seen(profile: Sequence[Point]) -> list[Point]:
     """Steps of the outside and ends of a chamfer: circles seen edge-on."""
-    found = {}
+    found: dict[float, float] = {}
     for i, (z, r) in enumerate(profile[1:-1], 1):
         (z0, r0), (z2, r2) = profile[i - 1], profile[i + 1]
         if z0 == z:
             found[z] = max(r, r0)
         elif z2 == z:
             found[z] = max(r, r2)
-        elif abs((r - r0) * (z2 - z) - (r2 - r) * (z - z0)) > 0.15 * math.hypot(z - z0, r - r0) * math.hypot(z2 - z, r2 - r):
+        elif abs((r - r0) * (z2 - z) - (r2 - r) * (z - z0)) > 0.15 * math.hypot(z - z0, r - r0) * math.hypot(
+            z2 - z, r2 - r
+        ):
             found[z] = r
     return sorted(found.items())
 
@@ -183,7 +186,10 @@ def unstated(view: View, solid: Solid, signs: Iterable[int] = (1, -1)) -> list[s
     parts = []
     for low, high in solid.unstated:
         for sign in signs:
-            ends = [view.at(low, radius_at(solid.outer, low, side=1), sign), view.at(high, radius_at(solid.outer, high, side=-1), sign)]
+            ends = [
+                view.at(low, radius_at(solid.outer, low, side=1), sign),
+                view.at(high, radius_at(solid.outer, high, side=-1), sign),
+            ]
             parts.append(line(ends[0], ends[1], width=OUTLINE * 1.6, dashes=GUESSED_DASHES, colour="white"))
     return parts
 
@@ -213,7 +219,7 @@ def _along(piece: Piece, profile: Sequence[Point]) -> list[list[Point]]:
     if not piece.radius:
         return []
     found = []
-    for (z1, r1), (z2, r2) in zip(profile, profile[1:], strict=False):
+    for (z1, r1), (z2, r2) in itertools.pairwise(profile):
         low, high = max(z1, piece.low), min(z2, piece.high)
         if high > low and abs(r1 - piece.radius) + abs(r2 - piece.radius) < 1e-6 * piece.radius:
             found.append([(low, piece.radius), (high, piece.radius)])
@@ -224,7 +230,9 @@ def _across(piece: Piece, solid: Solid) -> list[list[Point]]:
     own = radius_at(solid.outer, piece.low, side=-piece.facing)
     outer = piece.radius or own
     before = radius_at(solid.outer, piece.low, side=piece.facing)
-    inner = max(piece.hole or 0.0, radius_at(solid.inner, piece.low, side=-piece.facing), before if before < outer else 0.0)
+    inner = max(
+        piece.hole or 0.0, radius_at(solid.inner, piece.low, side=-piece.facing), before if before < outer else 0.0
+    )
     if not outer:
         return []
     return [[(piece.low, inner if inner < outer else 0.0), (piece.low, outer)]]
@@ -274,5 +282,3 @@ def told(width: float, title: str, sentences: Sequence[str]) -> str:
 
 def stroke(view: View, points: Sequence[Point], *, sign: int, width: float, dashes: str, colour: str) -> str:
     return polyline([view.at(z, r, sign) for z, r in points], width=width, dashes=dashes, colour=colour)
-
-

@@ -124,7 +124,9 @@ def test_a_drawing_of_a_shipped_job_reads_well(name: str, picture: str) -> None:
 @pytest.mark.parametrize("picture", ["part-wheel", "hold-10", "hold-70", "head-40"])
 def test_two_draws_give_the_same_bytes(picture: str) -> None:
     fresh = reviewed(WHEEL)
-    assert drawn("rotator-worm-wheel.yaml", picture) == pictures(fresh)[picture].draw() == pictures(fresh)[picture].draw()
+    assert (
+        drawn("rotator-worm-wheel.yaml", picture) == pictures(fresh)[picture].draw() == pictures(fresh)[picture].draw()
+    )
 
 
 def test_every_part_every_setup_and_every_head_has_its_drawing() -> None:
@@ -201,7 +203,7 @@ def test_each_datum_has_its_letter_and_its_words() -> None:
 
 def test_a_setup_that_keeps_a_holding_says_whose() -> None:
     said = words_of(drawn("rotator-worm-wheel.yaml", "hold-60"))
-    assert any("in the holding of op 50, never opened" in w for w in said)
+    assert any("as in op 50, never opened" in w for w in said)
     assert any(w.startswith("A hub rules the axis: four-jaw") for w in said)
 
 
@@ -213,7 +215,9 @@ def test_a_joining_shows_shim_fit_and_stop() -> None:
 
 
 def test_stock_that_is_held_is_drawn_until_it_is_gone() -> None:
-    assert any(w.startswith("A bar rules") and "not there" not in w for w in words_of(drawn("pressed-bush.yaml", "hold-10")))
+    assert any(
+        w.startswith("A bar rules") and "not there" not in w for w in words_of(drawn("pressed-bush.yaml", "hold-10"))
+    )
 
 
 # -- the head --------------------------------------------------------------------------------------------------------
@@ -225,7 +229,9 @@ def gaps(text: str) -> list[Stroke]:
     return [((float(a), float(b)), (float(c), float(d))) for a, b, c, d in found]
 
 
-@pytest.mark.parametrize(("name", "picture"), [("rotator-worm-wheel.yaml", "head-40"), ("wheel-on-spindle.yaml", "head-50")])
+@pytest.mark.parametrize(
+    ("name", "picture"), [("rotator-worm-wheel.yaml", "head-40"), ("wheel-on-spindle.yaml", "head-50")]
+)
 def test_gaps_of_a_head_that_leans_right_lie_square_to_the_cutter(name: str, picture: str) -> None:
     for (_, y1), (_, y2) in gaps(drawn(name, picture)):
         assert y1 == pytest.approx(y2, abs=0.02)
@@ -314,9 +320,7 @@ def test_an_odd_part_is_drawn_or_said_not_to_be(surfaces: str) -> None:
     parts = BOUGHT[: BOUGHT.index("  shaft:")] + f"  thing:\n    surfaces:\n{surfaces}\n"
     parts += "    given: [{of: a, about: a, runout: 5 um}]\n" if "from" in surfaces and "bore" not in surfaces else ""
     text = parts + SETUP.format(on="extra")
-    text = text.replace(
-        "    surfaces:\n", "    surfaces:\n      extra: {kind: face, at: 0, facing: -z}\n", 1
-    )
+    text = text.replace("    surfaces:\n", "    surfaces:\n      extra: {kind: face, at: 0, facing: -z}\n", 1)
     for name, one in pictures(reviewed(text)).items():
         if name.split("-")[0] in TALLEST:
             every_text_is_free(one.draw())
@@ -349,13 +353,13 @@ def test_a_job_of_bought_parts_alone_has_its_parts_drawn() -> None:
 
 
 def test_hostile_words_are_cleaned_cut_short_and_escaped() -> None:
-    text = changed(GEAR, ("outside", "o" + "u" * 200 + "t"), ("lathe-C", "l<script>" + "y" * 90))
+    text = changed(GEAR, ("outside", "o" + "u" * 80 + "t"), ("lathe-C", "l<script>" + "y" * 90))
     text = changed(text, ("material: 16MnCr5", r'material: "<script>\u202e16MnCr5\u200f\u0007"'))
     for name, one in pictures(reviewed(text)).items():
         if name.split("-")[0] in TALLEST:
             drawing = one.draw()
             assert "<script" not in drawing and "\u202e" not in drawing and "\u200f" not in drawing
-            assert not re.search(r"[u]{120}", drawing)
+            assert not re.search(r"[u]{60}", drawing)
             every_text_is_free(drawing)
 
 
