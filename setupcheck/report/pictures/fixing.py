@@ -60,12 +60,19 @@ class Scene:
 
 
 def ends_of(shown: Sequence[tuple[Piece, ...]], solids: Sequence[Solid]) -> Point:
-    ends = [(body.low, body.high) for body in solids if body.outer] or [extent(shown[0])]
+    """Lowest and highest place of anything drawn."""
+    ends = [(body.low, body.high) for body in solids if body.outer] + [extent(pieces) for pieces in shown]
     return min(low for low, _ in ends), max(high for _, high in ends)
 
 
+def widest_of(shown: Sequence[tuple[Piece, ...]], solids: Sequence[Solid]) -> float:
+    """Largest radius of anything drawn."""
+    found = [r for body in solids for _, r in body.outer]
+    return max([*found, *(p.radius + (p.size or 0.0) / 2.0 for pieces in shown for p in pieces if p.radius)])
+
+
 def reach_of(scene: Scene) -> float:
-    return max(r for body in scene.solids for _, r in body.outer)
+    return widest_of(scene.pieces, scene.solids)
 
 
 def _bench(scene: Scene) -> Bench:

@@ -11,7 +11,7 @@ from setupcheck.jobfile.setups import Centre, Clock, Setup, Square
 from setupcheck.quantities.route import machine_of
 from setupcheck.report.pictures import WIDEST, Picture
 from setupcheck.report.pictures.devices import TRIANGLE, triangle
-from setupcheck.report.pictures.fixing import Datum, Scene, before, behind, ends_of, reach_of
+from setupcheck.report.pictures.fixing import Datum, Scene, before, behind, ends_of, reach_of, widest_of
 from setupcheck.report.pictures.labels import ROW, SIZE, Label, Placed, drawn, placed, rows, spread
 from setupcheck.report.pictures.marks import mark_of, plain, short, stated_size, wrapped
 from setupcheck.report.pictures.part import anchor, named, pattern_lines, z_arrow
@@ -145,7 +145,7 @@ def _scene(
     tall: float,
 ) -> Scene:
     low, high = ends_of(shown, solids)
-    radius = max(r for body in solids for _, r in body.outer)
+    radius = widest_of(shown, solids)
     wide = WIDEST - LEFT - RIGHT
     along, across = fitted(low, high, radius, wide=wide, tall=tall)
     looks = holding(found, setup).looks_at_tool or 1

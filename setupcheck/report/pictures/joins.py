@@ -12,6 +12,7 @@ from setupcheck.jobfile.setups import Join, Setup
 from setupcheck.notation import show
 from setupcheck.record import record
 from setupcheck.report.pictures import WIDEST
+from setupcheck.report.pictures.fixing import ends_of, widest_of
 from setupcheck.report.pictures.labels import ROW, SIZE, Label, Placed, drawn, placed, rows, spread
 from setupcheck.report.pictures.marks import Mark, plain, short, stated_size, wrapped
 from setupcheck.report.pictures.part import anchor, named, pattern_lines, z_arrow
@@ -131,12 +132,11 @@ def _broken(view: View, body: Solid, z: float) -> str:
 
 
 def _ends(sides: Sequence[Side]) -> Point:
-    bodies = [side.body for side in sides if side.body.outer]
-    return min(b.low for b in bodies), max(b.high for b in bodies)
+    return ends_of([side.pieces for side in sides], [side.body for side in sides])
 
 
 def _reach(sides: Sequence[Side]) -> float:
-    return max(r for side in sides for _, r in side.body.outer)
+    return widest_of([side.pieces for side in sides], [side.body for side in sides])
 
 
 def _laid(found: Review, setup: Setup, sides: Sequence[Side], below: float) -> tuple[View, list[Placed], list[Placed]]:

@@ -132,25 +132,34 @@ def _sheet(found: Review, part: str, pieces: Sequence[Piece], body: Solid, *, be
     return _Sheet(beside, tuple(_legend(found, part, wide)), tuple(n for n in notes if n))
 
 
+def _shown(pieces: Sequence[Piece], body: Solid) -> list[Piece]:
+    """All but stock of which nothing is left."""
+    return [p for p in pieces if not p.stock or not body.outer or p.kind == "centre" or _stands(p, body)]
+
+
 def _widest(pieces: Sequence[Piece], body: Solid) -> float:
-    """Largest radius drawn; a bore alone counts, stock around a finished outside does not."""
-    found = [r for _, r in body.outer] or [0.0]
-    found += [
-        p.radius + (p.size or 0.0) / 2.0 + 0.2 * (p.hollow or 0.0)
-        for p in pieces
-        if p.radius and not (p.stock and body.outer)
+    """Largest radius drawn, were it only that of a surface the file puts outside the part."""
+    return max((r for _, r in body.outer), default=0.0) + widest_beyond(_shown(pieces, body), body)
+
+
+def widest_beyond(pieces: Sequence[Piece], body: Solid) -> float:
+    """How far surfaces reach out of the part's outside [mm]."""
+    most = max((r for _, r in body.outer), default=0.0)
+    found = [
+        p.radius + (p.size or 0.0) / 2.0 + (0.0 if body.outer else 0.2 * (p.hollow or 0.0)) for p in pieces if p.radius
     ]
-    return max(found)
+    return max(max(found, default=0.0) - most, 0.0)
+
+
+def _ends(pieces: Sequence[Piece], body: Solid) -> Point:
+    shown = extent(_shown(pieces, body) or pieces)
+    return (min(body.low, shown[0]), max(body.high, shown[1])) if body.outer else shown
 
 
 def _slim(pieces: Sequence[Piece], body: Solid) -> bool:
     """A part too long for a legend beside it."""
     low, high = _ends(pieces, body)
     return high - low > 2.0 * _widest(pieces, body) * 1.4
-
-
-def _ends(pieces: Sequence[Piece], body: Solid) -> Point:
-    return (body.low, body.high) if body.outer else extent(pieces)
 
 
 def _view(pieces: Sequence[Piece], body: Solid, sheet_: _Sheet, *, wide: float, above: float) -> View:
@@ -188,8 +197,7 @@ def _named_view(
 
 
 def _labels(found: Review, view: View, pieces: Sequence[Piece], body: Solid, most: float) -> list[Label]:
-    standing = [p for p in pieces if not p.stock or not body.outer or p.kind == "centre" or _stands(p, body)]
-    shown = [p for p in standing if anchor(p, view, body, pieces) is not None][:NAMED]
+    shown = [p for p in _shown(pieces, body) if anchor(p, view, body, pieces) is not None][:NAMED]
     return named(
         view,
         body,
@@ -292,7 +300,7 @@ def pattern_lines(view: View, piece: Piece, body: Solid, colour: str) -> list[st
 
 def _inward(piece: Piece, body: Solid) -> int:
     """Which way metal lies from the end that a hole or slot is in."""
-    return -1 if piece.low > sum(_ends([piece], body)) / 2.0 else 1
+    return -1 if body.outer and piece.low > (body.low + body.high) / 2.0 else 1
 
 
 def _thickness(body: Solid, z: float, radius: float, inward: int) -> float:

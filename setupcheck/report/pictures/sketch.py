@@ -24,7 +24,7 @@ OUTLINE, SURFACE = 0.35, 0.7
 LEAST = 3.0
 """Smallest length or radius of a part on paper [mm]: below it the other scale is left alone and this one grows. Our choice."""
 
-HATCH, BLIND = 1.9, 2600.0
+HATCH, BLIND = 1.9, 2000.0
 """Distance of hatch lines, and area on paper [mm, mm2] above which they stand wider apart. Our choice."""
 
 STEPS = (1.0, 1.25, 1.5, 2.0, 2.5, 3.0, 4.0, 5.0, 6.0, 8.0)
