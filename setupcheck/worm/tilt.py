@@ -19,7 +19,7 @@ Lean = Literal["nose-up", "nose-down", "left", "right", "front", "back"]
 
 _Vector = tuple[int, int, int]
 
-DIRECTIONS: dict[str, _Vector] = {
+_VECTORS: dict[str, _Vector] = {
     "right": (1, 0, 0),
     "left": (-1, 0, 0),
     "back": (0, 1, 0),
@@ -52,9 +52,9 @@ def _frame(hand: str, nose_points: str, cutter_stands: str) -> tuple[_Vector, _V
     if hand not in ("right", "left"):
         raise ValueError(f"the hand is right or left, not {hand}")
     for word in (nose_points, cutter_stands):
-        if word not in DIRECTIONS:
+        if word not in _VECTORS:
             raise ValueError(f"{word} is no direction; write left, right, up, down, above, front or back")
-    nose, cutter = DIRECTIONS[nose_points], DIRECTIONS[cutter_stands]
+    nose, cutter = _VECTORS[nose_points], _VECTORS[cutter_stands]
     if not any(_cross(nose, cutter)):
         raise ValueError(
             f"with the nose pointing {nose_points} the cutter cannot stand {cutter_stands}: beside the axis"

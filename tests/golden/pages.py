@@ -15,6 +15,7 @@ from setupcheck.jobfile.changing import Change
 from setupcheck.jobfile.ranging import read_range
 from setupcheck.jobfile.reading import read_job_text
 from setupcheck.report.index_table import as_index_table
+from setupcheck.report.pictures import pictures
 from setupcheck.report.text import as_text
 from setupcheck.report.vary import as_text as varied_as_text
 from setupcheck.report.vary_drawing import as_drawing
@@ -57,7 +58,9 @@ def reports() -> dict[str, str]:
 
 def drawings() -> dict[str, str]:
     """File name -> SVG of every golden drawing."""
-    return {"vary-range.svg": as_drawing(swept())}
+    found = pictures(review(ROOT / "jobs" / "rotator-worm-wheel.yaml"))
+    named = {"picture-part.svg": "part-wheel", "picture-hold.svg": "hold-50", "picture-head.svg": "head-40"}
+    return {"vary-range.svg": as_drawing(swept()), **{file: found[name].draw() for file, name in named.items()}}
 
 
 def varied() -> str:

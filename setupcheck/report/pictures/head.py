@@ -11,7 +11,7 @@ from setupcheck.jobfile.setups import Head, Setup
 from setupcheck.notation import show_angle
 from setupcheck.quantities.book import Known, Scope
 from setupcheck.quantities.route import machine_of
-from setupcheck.quantities.tilting import cuts_the_wheel
+from setupcheck.quantities.tilting import cuts_the_wheel, way_needed
 from setupcheck.record import record
 from setupcheck.report.pictures import WIDEST, Picture
 from setupcheck.report.pictures.labels import SIZE
@@ -19,7 +19,6 @@ from setupcheck.report.pictures.marks import AXIS_DASHES, short, wrapped
 from setupcheck.report.pictures.sketch import sheet, told
 from setupcheck.report.svg import Point, area, circle, line, lines, polygon, polyline, rectangle, words
 from setupcheck.report.worked_out import worked_out
-from setupcheck.worm.tilt import DIRECTIONS, needed_lean
 
 STEEP = math.radians(14.0)
 """A lean is drawn at least so steep: a few degrees would not be seen. Our choice."""
@@ -33,12 +32,18 @@ signs, not sizes."""
 
 Vector = tuple[int, int, int]
 
-LEANS = {
-    "nose-up": (0, 0, 1),
-    "nose-down": (0, 0, -1),
-    **{word: DIRECTIONS[word] for word in ("left", "right", "front", "back")},
+DIRECTIONS: dict[str, Vector] = {
+    "right": (1, 0, 0),
+    "left": (-1, 0, 0),
+    "back": (0, 1, 0),
+    "front": (0, -1, 0),
+    "up": (0, 0, 1),
+    "above": (0, 0, 1),
 }
-"""Where the nose goes: x to the operator's right, y away from him, z up."""
+"""Directions at the machine: x to the operator's right, y away from him, z up, as in `worm.tilt`."""
+
+LEANS = {**DIRECTIONS, "nose-up": (0, 0, 1), "nose-down": (0, 0, -1)}
+"""Where the nose goes."""
 
 
 def offered(found: Review) -> Iterator[Picture]:
@@ -158,11 +163,7 @@ def _correction(found: Review, setup: Setup, head: Head) -> str:
     """What is to be changed at the head, from the review's own verdicts."""
     needed, allowed = _needed(found, setup), _known(found, setup, "tilt.allowed")
     if _known(found, setup, "tilt.lean") == "wrong":
-        _, machine = machine_of(found.loaded, setup)
-        hand = _hand(found, setup)
-        if machine is not None and hand and machine.nose_points and machine.cutter_stands:
-            way = needed_lean(hand=hand, nose_points=machine.nose_points, cutter_stands=machine.cutter_stands)
-            return f"WRONG WAY: it must lean {way}"
+        return f"WRONG WAY: it must lean {way_needed(found.floor, setup)}"
     if needed is None:
         return ""
     off = abs(head.tilt) - needed

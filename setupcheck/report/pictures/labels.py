@@ -42,7 +42,7 @@ class Label:
     @property
     def wide(self) -> float:
         flag = room(self.flag, SIZE) + _FLAG + 1.0 if self.flag else 0.0
-        return flag + room(self.text, SIZE)
+        return flag + room(self.text, SIZE) + 0.4
 
 
 @record
