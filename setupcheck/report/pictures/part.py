@@ -9,6 +9,7 @@ from functools import partial
 from setupcheck.flow import Review
 from setupcheck.record import record
 from setupcheck.report.pictures import WIDEST, Picture
+from setupcheck.report.pictures.end_view import AWAY, end_view, has_places
 from setupcheck.report.pictures.labels import ROW, SIZE, Label, Placed, drawn, placed, rows, spread
 from setupcheck.report.pictures.marks import (
     AXIS_DASHES,
@@ -47,7 +48,16 @@ TOP, LEGEND, RULER = 10.0, 4.8, 13.0
 NAMED = 22
 """So many surfaces are named at the drawing, more stand in the legend alone. Our choice: what rows of names have room for."""
 
-TRIES = ((140.0, 58.0), (140.0, 44.0), (120.0, 58.0), (120.0, 44.0), (100.0, 44.0), (80.0, 44.0), (60.0, 40.0))
+TRIES = (
+    (140.0, 58.0),
+    (140.0, 44.0),
+    (120.0, 58.0),
+    (120.0, 44.0),
+    (100.0, 44.0),
+    (80.0, 58.0),
+    (80.0, 44.0),
+    (60.0, 40.0),
+)
 """Widths of the part itself and of the widest name that are tried, until all names go between the edges [mm of paper]."""
 
 BESIDE = 62.0
@@ -111,6 +121,7 @@ def draw(found: Review, part: str) -> str:
         *_lines(found, part, view, body, pieces),
         *_axis(view, pieces, body),
         *drawn(done, start=over - 3.0, way=-1),
+        *_from_the_end(found, view, pieces, body),
         *_positions(found, view, pieces, body, bottom),
     ]
     y = bottom + RULER + 3.0
@@ -156,6 +167,12 @@ def _ends(pieces: Sequence[Piece], body: Solid) -> Point:
     return (min(body.low, shown[0]), max(body.high, shown[1])) if body.outer else shown
 
 
+def _ringed(pieces: Sequence[Piece], body: Solid) -> bool:
+    """True where an end view stands beside the section: there is something to see, and both go side by side."""
+    low, high = _ends(pieces, body)
+    return has_places(pieces) and body.outer != () and 0.05 < (high - low) / (2.0 * _widest(pieces, body)) < 2.0
+
+
 def _slim(pieces: Sequence[Piece], body: Solid) -> bool:
     """A part too long for a legend beside it."""
     low, high = _ends(pieces, body)
@@ -165,9 +182,14 @@ def _slim(pieces: Sequence[Piece], body: Solid) -> bool:
 def _view(pieces: Sequence[Piece], body: Solid, sheet_: _Sheet, *, wide: float, above: float) -> View:
     low, high = _ends(pieces, body)
     tall = max(TALLEST - above - sheet_.below - 6.0, 20.0)
-    along, across = fitted(low, high, _widest(pieces, body), wide=wide, tall=tall)
     left = BESIDE if sheet_.beside else 0.0
-    return View(along, across, left + (WIDEST - left - along * (high - low)) / 2.0, 0.0, low)
+    radius, more = _widest(pieces, body), 0.0
+    if _ringed(pieces, body):  # both views side by side
+        tall = min(tall, 2.0 * radius * (WIDEST - left - AWAY - 20.0) / (high - low + 2.0 * radius))
+    along, across = fitted(low, high, radius, wide=wide, tall=tall)
+    if _ringed(pieces, body):
+        more = AWAY + 2.0 * radius * across
+    return View(along, across, left + max((WIDEST - left - along * (high - low) - more) / 2.0, 8.0), 0.0, low)
 
 
 def _laid(found: Review, pieces: Sequence[Piece], body: Solid, sheet_: _Sheet) -> tuple[View, list[Placed]] | None:
@@ -325,6 +347,15 @@ def z_arrow(x: float, y: float, way: int) -> list[str]:
     ]
 
 
+def _from_the_end(found: Review, view: View, pieces: Sequence[Piece], body: Solid) -> list[str]:
+    """The end view, where a pattern asks for one and there is room beside the section."""
+    if not _ringed(pieces, body):
+        return []
+    radius = view.across * _widest(pieces, body)
+    middle = view.x(_ends(pieces, body)[1]) + AWAY + radius
+    return end_view(found, _shown(pieces, body), body, middle=(middle, view.axis), scale=view.across)
+
+
 def _positions(found: Review, view: View, pieces: Sequence[Piece], body: Solid, bottom: float) -> list[str]:
     """Positions along the part, each under its place, in two rows."""
     placed_ = [p for p in pieces if not p.stock] or pieces
@@ -390,6 +421,8 @@ def _notes(pieces: Sequence[Piece], body: Solid) -> list[str]:
         notes.append("no outside diameter stated: surfaces alone")
     if any(p.kind in ("holes", "slot") for p in pieces):
         notes.append("walls of holes and slots dashed, as no depth is stated")
+        if _ringed(pieces, body):
+            notes.append("right: from the +z end, the mark to the right, first place black")
     if body.unstated:
         notes.append("outline dashed where no surface states it")
     if any(p.kind == "teeth" for p in pieces):

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import itertools
+import math
 import re
 from functools import cache
 from pathlib import Path
@@ -174,6 +175,23 @@ def test_lengths_and_diameters_are_drawn_to_one_scale() -> None:
     xs, ys = [p[0] for p in outside], [p[1] for p in outside]
     assert 63.0 * times == pytest.approx(max(ys) - min(ys), abs=0.01)
     assert 16.0 * times == pytest.approx(max(xs) - min(xs), abs=0.01)
+
+
+def test_holes_stand_round_the_end_view_where_they_are_drilled() -> None:
+    found = [
+        n
+        for n in parsed(drawn("index-plate.yaml", "part-plate")).iter(f"{SVG}circle")
+        if n.attrib["stroke"] == "#2b7a2b"
+    ]
+    circle = next(n for n in found if "stroke-dasharray" in n.attrib)
+    x, y, radius = (float(circle.attrib[key]) for key in ("cx", "cy", "r"))
+    holes = [n for n in found if n.attrib["stroke-width"] == "0.35"]
+    assert 24 == len(holes)
+    places = [(float(n.attrib["cx"]) - x, y - float(n.attrib["cy"])) for n in holes]
+    assert [radius] * 24 == pytest.approx([math.hypot(*place) for place in places], abs=0.002)
+    turns = [math.degrees(math.atan2(b, a)) % 360.0 for a, b in places]
+    assert [15.0 * i for i in range(24)] == pytest.approx(turns, abs=0.02)
+    assert ["black"] + ["white"] * 23 == [n.attrib["fill"] for n in holes]
 
 
 def place_of(text: str, label: str) -> float:
