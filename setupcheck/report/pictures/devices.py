@@ -75,8 +75,6 @@ def arbor(bench: Bench, grip: Grip, *, by: str, through: bool) -> list[str]:
     parts = [rectangle((bench.chuck, bench.axis - half), end - bench.chuck, 2.0 * half, fill=GREY)]
     if by == "expanding-mandrel":  # its slits
         parts += [line((bench.left, bench.axis + s * 0.4 * half), (end, bench.axis + s * 0.4 * half)) for s in (1, -1)]
-    if by == "taper-mandrel":
-        parts.append(line((bench.left - 3.0, bench.axis - half - 0.8), (end, bench.axis - half + 0.2)))
     return parts
 
 

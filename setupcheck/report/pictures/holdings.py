@@ -117,7 +117,7 @@ def _laid(
     """The scene at the largest scale at which all names have room; names are left out where none is."""
     count = 2
     for _ in range(8):
-        tall = max(TALLEST - TOP - below - count * ROW - 22.0, 16.0)
+        tall = max(TALLEST - TOP - below - count * ROW - 24.0, 16.0)
         scene = _scene(found, setup, shown, solids, datums, tall)
         over = TOP + 2.0
         for _ in range(3):

@@ -70,7 +70,7 @@ FAR = 2.4
 def offered(found: Review) -> Iterator[Picture]:
     """The drawing of every part."""
     for part in found.loaded.job.parts:
-        yield Picture(f"part-{part}", _title(found, part), partial(draw, found, part))
+        yield Picture(f"part-{clean(part)}", _title(found, part), partial(draw, found, part))
 
 
 def _title(found: Review, part: str) -> str:

@@ -391,3 +391,22 @@ def test_many_surfaces_are_named_as_far_as_there_is_room() -> None:
     drawing = pictures(reviewed(text))["part-thing"].draw()
     every_text_is_free(drawing)
     assert "s39" in " ".join(words_of(drawing))
+
+
+def test_a_holding_without_an_error_says_that_none_is_stated() -> None:
+    text = changed(
+        WHEEL, ("centre: {on: rim, by: soft-jaws, at: 10, runout: 15 um}", "centre: {on: rim, by: soft-jaws, at: 10}")
+    )
+    said = words_of(pictures(reviewed(text))["hold-30"].draw())
+    assert "A rim rules the axis: soft-jaws, no error stated, at z 10" in said
+
+
+def test_a_surface_cut_here_is_thicker_than_every_other_line() -> None:
+    text = drawn("rotator-worm-wheel.yaml", "hold-30")
+    widths = {
+        colour: {
+            float(n.attrib["stroke-width"]) for n in parsed(text).iter(f"{SVG}polyline") if n.attrib["stroke"] == colour
+        }
+        for colour in ("#2b7a2b", "black")
+    }
+    assert min(widths["#2b7a2b"]) > 2.0 * max(widths["black"])
