@@ -133,6 +133,21 @@ def lean(floor: Floor, setup: Setup) -> str | Open | None:
     return "right" if right else "wrong"
 
 
+def way_needed(floor: Floor, setup: Setup) -> str | None:
+    """Where the nose must go for the hand of the worm, as the job file would write it; None where a place is not stated.
+
+    Source: derived in worm.tilt.
+    """
+    from setupcheck.worm.tilt import needed_lean
+
+    places = _places(floor, setup) if cuts_the_wheel(floor.loaded, setup) else None
+    if places is None or isinstance(places, Open):
+        return None
+    hand, nose, cutter = places
+    with in_range:
+        return needed_lean(hand=hand, nose_points=nose, cutter_stands=cutter)
+
+
 def picture(floor: Floor, setup: Setup) -> str | Open | None:
     """Which way the gaps fall and which end of the wheel's axis goes up, in words from the cutter's side.
 

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Iterable, Sequence
 from html import escape
+from unicodedata import east_asian_width
 
 Point = tuple[float, float]
 
@@ -41,19 +42,44 @@ def tag(name: str, content: str | None = None, /, **attributes: str | float) -> 
     return f"<{inside}/>" if content is None else f"<{inside}>{content}</{name}>"
 
 
-def line(start: Point, end: Point, *, width: float = THIN, dashes: str = "") -> str:
+def line(start: Point, end: Point, *, width: float = THIN, dashes: str = "", colour: str = "black") -> str:
     """A straight line."""
     more: dict[str, str | float] = {"stroke_dasharray": dashes} if dashes else {}
-    return tag("line", x1=start[0], y1=start[1], x2=end[0], y2=end[1], stroke="black", stroke_width=width, **more)
+    return tag("line", x1=start[0], y1=start[1], x2=end[0], y2=end[1], stroke=colour, stroke_width=width, **more)
 
 
-def polyline(points: Iterable[Point], *, width: float = THICK, dashes: str = "") -> str:
+def polyline(points: Iterable[Point], *, width: float = THICK, dashes: str = "", colour: str = "black") -> str:
     """An open line through points."""
     path = " ".join(f"{number(x)},{number(y)}" for x, y in points)
     more: dict[str, str | float] = {"stroke_dasharray": dashes} if dashes else {}
-    return tag(
-        "polyline", points=path, fill="none", stroke="black", stroke_width=width, stroke_linejoin="round", **more
-    )
+    return tag("polyline", points=path, fill="none", stroke=colour, stroke_width=width, stroke_linejoin="round", **more)
+
+
+def lines(
+    pieces: Iterable[tuple[Point, Point]], *, width: float = THIN, dashes: str = "", colour: str = "black"
+) -> str:
+    """Many straight lines in one element, as in a hatch; nothing where there are none."""
+    path = "".join(f"M{number(a[0])} {number(a[1])}L{number(b[0])} {number(b[1])}" for a, b in pieces)
+    more: dict[str, str | float] = {"stroke_dasharray": dashes} if dashes else {}
+    return tag("path", d=path, fill="none", stroke=colour, stroke_width=width, **more) if path else ""
+
+
+def rectangle(
+    at: Point, wide: float, high: float, *, fill: str = "none", width: float = THIN, colour: str = "black"
+) -> str:
+    """An outlined rectangle by its upper left corner."""
+    return tag("rect", x=at[0], y=at[1], width=wide, height=high, fill=fill, stroke=colour, stroke_width=width)
+
+
+def circle(at: Point, radius: float, *, fill: str = "none", width: float = THIN, colour: str = "black") -> str:
+    """An outlined circle."""
+    return tag("circle", cx=at[0], cy=at[1], r=radius, fill=fill, stroke=colour, stroke_width=width)
+
+
+def area(points: Iterable[Point], *, fill: str = "white", width: float = THIN, colour: str = "black") -> str:
+    """A filled area with its outline."""
+    path = " ".join(f"{number(x)},{number(y)}" for x, y in points)
+    return tag("polygon", points=path, fill=fill, stroke=colour, stroke_width=width, stroke_linejoin="round")
 
 
 def polygon(points: Iterable[Point], *, fill: str = "black") -> str:
@@ -81,7 +107,8 @@ def room(text: str, size: float) -> float:
     >>> round(room("12.345", 3.0), 2)
     11.16
     """
-    return CHARACTER * size * len(text)
+    wide = 0 if text.isascii() else sum(east_asian_width(c) in "WF" for c in text)
+    return CHARACTER * size * (len(text) + 0.65 * wide)
 
 
 def picture(width: float, height: float, *, title: str, parts: Sequence[str]) -> str:

@@ -62,9 +62,16 @@ def drawings() -> dict[str, str]:
 
 
 def route_pictures() -> dict[str, str]:
-    """The datums, the first stack and the lengths along the axis of the worm wheel."""
+    """Part, a holding, the head, the datums, the first stack and the lengths along the axis of the worm wheel."""
     drawn = pictures(review(ROOT / "jobs" / "rotator-worm-wheel.yaml"))
-    names = {"datums": "datums", "stack": "stack-1", "axial": "axial"}
+    names = {
+        "part": "part-wheel",
+        "hold": "hold-50",
+        "head": "head-40",
+        "datums": "datums",
+        "stack": "stack-1",
+        "axial": "axial",
+    }
     return {f"picture-{name}.svg": drawn[key].draw() for name, key in names.items()}
 
 

@@ -32,10 +32,13 @@ def pictures(found: Review, read: ReadBack | None = None) -> dict[str, Picture]:
 
 
 def _all(found: Review, read: ReadBack | None) -> Iterator[Picture]:
-    from setupcheck.report.pictures import axial, datums, heating, high_spots, pitch, stacks
+    from setupcheck.report.pictures import axial, datums, head, heating, high_spots, holdings, part, pitch, stacks
 
+    yield from part.offered(found)
     yield from datums.offered(found)
     yield from axial.offered(found)
+    yield from holdings.offered(found)
+    yield from head.offered(found)
     yield from heating.offered(found)
     yield from high_spots.offered(found)
     yield from stacks.offered(found)
