@@ -36,10 +36,12 @@ class Keys(HTMLParser):
         self._tags.append(tag)
 
     def handle_data(self, data: str) -> None:
-        if self._end is not None and self._tags[-1] == "code":
+        if self._end is None:
+            return
+        if self._tags[-1] == "code" or self._tags[-1] == "wbr":
             self._end += data
-        elif self._end is not None and self._tags[-1] == "small":
-            self.found[self._row + self._end] = data
+        elif self._tags[-1] == "span":
+            self.found[self._row + self._end] = data.strip()
 
     def handle_endtag(self, tag: str) -> None:
         while self._tags and self._tags.pop() != tag:

@@ -62,7 +62,7 @@ class Boxes:
 
     def size(self, key: str, says: str, given: Dimension) -> Row:
         """A size; a diameter with the temperature it was measured at, as it alone is brought back to 20 degC."""
-        warm = (Cell(".at_temperature", "at degC"),) if key.endswith(".diameter") else ()
+        warm = (Cell(".at_temperature", "degC"),) if key.endswith(".diameter") else ()
         cells = (Cell(".measured", self.long), *warm, Cell(".uncertainty", f"known to ± {self.fine}"))
         return self._row(key, says, self.show.size(given), cells)
 

@@ -45,7 +45,7 @@ STOPPED = {
 }
 """What stands large under a verdict that is no pass."""
 
-MOST_STACKS = 6
+MOST_STACKS = 5
 """Requirements drawn on the sheet, the tightest ones. Source: our choice, two pages of it; all stand on the cover as text."""
 
 MOST_PLACES = 2
@@ -170,6 +170,8 @@ def sheet_of(found: Review, read: ReadBack | None = None) -> Sheet:
     stacks, more = _tightest(found, drawn)
     transfers = tuple(p for name, p in drawn.items() if name == "datums")
     used |= {picture.name for picture in transfers}
+    used |= {f"part-{name}" for name in set(job.parts) - set(found.floor.part_of.values())}  # bought: nothing is cut
+    used |= {f"hold-{setup.op}" for setup in job.setups if setup.keeps is not None}  # drawn at the operation they keep
     overview = tuple(p for name, p in drawn.items() if not name.startswith("stack-") and name not in used)
     left = [s for s in found.evaluation.cautions if s.severity == "stop-and-check" and not s.answered]
     limited = " of what this version computes" if found.verdict == "pass" and uncomputed(loaded) else ""
@@ -361,7 +363,8 @@ def _list(value: object) -> list[object]:
 
 def _pictures(found: Review, setup: Setup, drawn: dict[str, Picture]) -> list[Picture]:
     """The holding, the head, the heat, and the stack in which this operation weighs most."""
-    names = [f"hold-{setup.op}", f"head-{setup.op}", f"heating-{setup.op}"]
+    hold = [] if setup.keeps is not None else [f"hold-{setup.op}"]
+    names = [*hold, f"head-{setup.op}", f"heating-{setup.op}"]
     return [drawn[name] for name in names if name in drawn]
 
 
