@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import math
-from collections.abc import Iterator, Sequence
+from collections.abc import Callable, Iterator, Sequence
 
 from setupcheck.jobfile.changing import Change
 from setupcheck.jobfile.reading import LoadedJob
@@ -24,6 +24,11 @@ LITTLE = 0.1
 """Share of what is over below which taking a cause away altogether is called no help. Source: our screening choice."""
 MOST_STEPS = 12
 """Steps of the last decimal by which a value is moved to the one that just does, as typed in. Source: our choice."""
+
+HALF = 0.5
+"""Share of an entry that is typed in to see whether its causes act as they are added up. Source: our choice."""
+AGREES = 1e-6
+"""Share by which both may differ: the noise of sums. Source: our choice."""
 
 
 @record
@@ -169,7 +174,7 @@ def _table(bench: Bench, key: str, result: Result) -> Table:
         if isinstance(one, Cause):
             unsaid.append(one)
         elif any(cause.op in gone for cause in one.causes):
-            still = limits.excess(_at(figure, one, 0.0))
+            still = limits.excess(at(figure, one, 0.0))
             done.append(Row(one, over - still, still))
         else:
             rows.append(_row(limits, figure, one, over))
@@ -192,13 +197,34 @@ class _Limits:
     def excess(self, figure: Figure) -> float:
         return worst_excess(figure, self.low, self.high)
 
+    def of(self, figure: Figure, entry: Entry) -> Callable[[float], float]:
+        """How far outside the stack is with an entry so many times as large.
+
+        From the causes of the figure; where half of it typed in gives another answer (a cause that also acts in another
+        way), from the job itself, at no less than one step of the last decimal.
+        """
+
+        def on_paper(factor: float) -> float:
+            return self.excess(at(figure, entry, factor))
+
+        def in_the_file(factor: float) -> float:
+            step = step_of(entry.says[0].unit, inches=self.bench.loaded.job.units == "in")
+            return self.typed_in(typed(self.bench, entry, max(factor, step / entry.says[0].now)))
+
+        half = typed(self.bench, entry, HALF)
+        if not half:
+            return on_paper
+        share = stated_share(self.bench, entry, half)
+        told = self.typed_in(half)
+        return on_paper if abs(told - on_paper(share)) <= AGREES * max(abs(told), abs(on_paper(1.0))) else in_the_file
+
     def typed_in(self, changes: Sequence[Change]) -> float:
         """How far outside the stack is once the changes are typed in."""
         figure = self.bench.figure(changes, self.index)
         return self.excess(figure) if figure is not None else math.inf
 
 
-def _at(figure: Figure, entry: Entry, factor: float) -> Figure:
+def at(figure: Figure, entry: Entry, factor: float) -> Figure:
     """The figure with every cause of an entry so many times as large."""
     for cause in entry.causes:
         figure = scaled(figure, cause, factor)
@@ -206,21 +232,21 @@ def _at(figure: Figure, entry: Entry, factor: float) -> Figure:
 
 
 def _row(limits: _Limits, figure: Figure, entry: Entry, over: float) -> Row:
-    still = limits.excess(_at(figure, entry, 0.0))
+    excess = limits.of(figure, entry)
+    still = excess(0.0)
     if still > 0.0 or over <= 0.0:
         return Row(entry, over - still, still)
-    factor = _largest(lambda f: limits.excess(_at(figure, entry, f)))
-    needed, typed = _just_enough(limits, entry, factor)
-    return Row(entry, over - still, still if needed else max(still, 0.0), needed, typed)
+    factor = _largest(excess)
+    needed, changes = _just_enough(limits, entry, factor)
+    return Row(entry, over - still, still if needed else max(still, 0.0), needed, changes)
 
 
-def _largest(excess: object) -> float:
+def _largest(excess: Callable[[float], float]) -> float:
     """The largest factor in 0 .. 1 at which a convex excess is not above zero, which it is at 0.
 
     Chords from the inside end: each chord of a convex function meets zero at or before the function does.
     Source: regula falsi, textbook.
     """
-    assert callable(excess)
     inside, outside = 0.0, 1.0
     low, high = excess(0.0), excess(1.0)
     if high <= 0.0:
@@ -253,10 +279,10 @@ def _just_enough(limits: _Limits, entry: Entry, factor: float) -> tuple[tuple[fl
     least = max(one.least for one in entry.says)
     if count < 1 or count * step <= least:
         return (), ()
-    if _typed(limits.bench, entry, count * step / now) == ():
+    if typed(limits.bench, entry, count * step / now) == ():
         return tuple(one.now * count * step / now for one in entry.says), ()
     for _ in range(MOST_STEPS):
-        if limits.typed_in(_typed(limits.bench, entry, count * step / now)) <= 0.0:
+        if limits.typed_in(typed(limits.bench, entry, count * step / now)) <= 0.0:
             break
         count -= 1
         if count < 1 or count * step <= least:
@@ -264,15 +290,15 @@ def _just_enough(limits: _Limits, entry: Entry, factor: float) -> tuple[tuple[fl
     else:
         return (), ()
     for _ in range(MOST_STEPS):
-        if (count + 1) * step >= now or limits.typed_in(_typed(limits.bench, entry, (count + 1) * step / now)) > 0.0:
+        if (count + 1) * step >= now or limits.typed_in(typed(limits.bench, entry, (count + 1) * step / now)) > 0.0:
             break
         count += 1
     share = count * step / now
-    return tuple(one.now * share for one in entry.says), _typed(limits.bench, entry, share)
+    return tuple(one.now * share for one in entry.says), typed(limits.bench, entry, share)
 
 
-def _typed(bench: Bench, entry: Entry, factor: float) -> tuple[Change, ...]:
-    """An entry, and all that go with it, so many times as large, on the last printed decimal; () where it cannot be said."""
+def typed(bench: Bench, entry: Entry, factor: float, *, up: bool = False) -> tuple[Change, ...]:
+    """An entry, and all that go with it, so many times as large, to the last printed decimal; () where it cannot be said."""
     found = []
     inches = bench.loaded.job.units == "in"
     for path, said in (
@@ -280,7 +306,8 @@ def _typed(bench: Bench, entry: Entry, factor: float) -> tuple[Change, ...]:
         *((path, entry.says[0]) for path in entry.also),
     ):
         step = step_of(said.unit, inches=inches)
-        value = math.floor(said.now * factor / step + 1e-6) * step
+        count = said.now * factor / step
+        value = (math.ceil(count - 1e-6) if up else math.floor(count + 1e-6)) * step
         change = typed_change(bench.loaded, path, value, said.unit) if value > 0.0 else None
         if change is None:
             return ()
@@ -288,23 +315,30 @@ def _typed(bench: Bench, entry: Entry, factor: float) -> tuple[Change, ...]:
     return tuple(found)
 
 
+def stated_share(bench: Bench, entry: Entry, changes: Sequence[Change]) -> float:
+    """What share of its value the first path of an entry has once the changes are typed in, rounding included."""
+    floor = bench.changed(changes)
+    said = stated(floor.loaded, entry.path) if floor is not None else None
+    return said.now / entry.says[0].now if said is not None else math.nan
+
+
 def _spread(limits: _Limits, figure: Figure, sharing: Sequence[Entry], over: float) -> Spread:
-    def at(factor: float) -> float:
+    def together_at(factor: float) -> float:
         one = figure
         for entry in sharing:
-            one = _at(one, entry, factor)
+            one = at(one, entry, factor)
         return limits.excess(one)
 
-    still = at(0.0) if sharing else over
+    still = together_at(0.0) if sharing else over
     if still > 0.0 or over <= 0.0:
         return Spread(tuple(sharing), None, still)
-    factor = _largest(at)
+    factor = _largest(together_at)
     for _ in range(MOST_STEPS):
-        each = [_typed(limits.bench, entry, factor) for entry in sharing]
+        each = [typed(limits.bench, entry, factor) for entry in sharing]
         if not all(each):
             return Spread(tuple(sharing), factor, still)
-        typed = tuple(change for one in each for change in one)
-        if limits.typed_in(typed) <= 0.0:
-            return Spread(tuple(sharing), factor, still, typed)
+        together = tuple(change for one in each for change in one)
+        if limits.typed_in(together) <= 0.0:
+            return Spread(tuple(sharing), factor, still, together)
         factor *= 0.99
     return Spread(tuple(sharing), None, still)

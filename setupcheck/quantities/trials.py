@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Callable, Mapping, Sequence
+from dataclasses import field
 
 from setupcheck.errors import JobError
 from setupcheck.jobfile.editing import Edit, edited
@@ -53,13 +54,17 @@ class Bench:
     most: int = MOST_WALKS
     walks: int = 0
     met: bool = False
+    _walked: dict[tuple[Edit, ...], Floor | None] = field(default_factory=dict)
 
     def changed(self, edits: Sequence[Edit]) -> Floor | None:
-        """The route with an edit; None where the reader or the walk refuses it."""
-        try:
-            return walk(self.again(edited(self.loaded, edits)))
-        except (JobError, OutOfRange):
-            return None
+        """The route with an edit; None where the reader or the walk refuses it. Walked once for each edit."""
+        key = tuple(edits)
+        if key not in self._walked:
+            try:
+                self._walked[key] = walk(self.again(edited(self.loaded, key)))
+            except (JobError, OutOfRange):
+                self._walked[key] = None
+        return self._walked[key]
 
     def figure(self, edits: Sequence[Edit], index: int) -> Figure | None:
         """One requirement of the changed job; None where it cannot be told."""
