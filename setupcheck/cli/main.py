@@ -18,7 +18,7 @@ plugins.leave_out()
 
 import typer  # noqa: E402
 
-from setupcheck.cli import contact, index, insert, readings, record, review, rules, schema, vary, working  # noqa: E402
+from setupcheck.cli import contact, index, insert, readings, record, remedy, review, rules, schema, vary, working  # noqa: E402
 from setupcheck.errors import SetupcheckError  # noqa: E402
 
 app = typer.Typer(
@@ -38,6 +38,7 @@ app.command("index")(index.command)
 app.command("record")(record.command)
 app.command("readings")(readings.command)
 app.command("vary")(vary.command)
+app.command("remedy")(remedy.command)
 app.command("rules")(rules.command)
 app.command("schema")(schema.command)
 

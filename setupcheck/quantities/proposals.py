@@ -145,6 +145,8 @@ def best_of(
     """
     if failing:
         ranked = sorted((p for p in found if p.gain >= WORTH or p.cures), key=_rank)
+        if ranked and ranked[0].left == 0:  # beside a whole remedy half of one is no help
+            ranked = [p for p in ranked if p.left == 0]
     else:
         ranked = sorted((p for p in found if p.saves), key=lambda p: (-p.saves, p.idea.op))
     told: list[Proposal] = []
