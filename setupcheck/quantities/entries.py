@@ -67,6 +67,6 @@ def stated(loaded: LoadedJob, path: str, cause: Cause | None = None) -> Stated |
         if path.endswith(".polygon_tilt"):  # it counts by its square
             return None
         length = path.rpartition(".")[2] in LENGTHS_OF_A_DIVISION
-        angular = not length and any(word in path for word in (".divide.", ".tilt", "shaft_angle"))
+        angular = not length and any(word in path for word in (".divide.", ".tilt", "shaft_angle", ".head.uncertainty", ".turned"))
         return Stated(node, "arcsec" if angular else "um")
     return None

@@ -7,7 +7,7 @@ from dataclasses import replace
 from itertools import chain
 
 from setupcheck.errors import JobError, SetupcheckError, printable
-from setupcheck.jobfile.editing import Edit
+from setupcheck.jobfile.editing import Edit, Exchange
 from setupcheck.jobfile.reading import LoadedJob
 from setupcheck.quantities.good_enough import Enough, Pays, good_enough, next_measured
 from setupcheck.quantities.judged import Result
@@ -106,4 +106,7 @@ def _judged(one: Proposal, now: Judged, judge: Callable[[Sequence[Edit]], Judged
         for levels in (("fail",), ("fail", "warn"), ("open",)):
             if sum(after.counts.get((rule, x), 0) for x in levels) > sum(now.counts.get((rule, x), 0) for x in levels):
                 return None
-    return replace(one, cautions=tuple(sorted(after.cautions - now.cautions, key=lambda c: (c[0] or 0, c[1]))))
+    there = {edit.first: edit.second for edit in one.edits if isinstance(edit, Exchange)}
+    there |= {second: first for first, second in there.items()}
+    had = {(there.get(op, op) if op is not None else None, name) for op, name in now.cautions}
+    return replace(one, cautions=tuple(sorted(after.cautions - had, key=lambda c: (c[0] or 0, c[1]))))

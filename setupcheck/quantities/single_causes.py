@@ -15,7 +15,7 @@ from setupcheck.quantities.gates import origins, reaches, scaled, worst_excess
 from setupcheck.quantities.judged import Result
 from setupcheck.quantities.remedies import twins
 from setupcheck.quantities.trials import Bench
-from setupcheck.quantities.typed_entry import step_of, typed_change
+from setupcheck.quantities.typed_entry import step_of
 from setupcheck.record import record
 
 IN_HAND = 0.1
@@ -308,7 +308,7 @@ def typed(bench: Bench, entry: Entry, factor: float, *, up: bool = False) -> tup
         step = step_of(said.unit, inches=inches)
         count = said.now * factor / step
         value = (math.ceil(count - 1e-6) if up else math.floor(count + 1e-6)) * step
-        change = typed_change(bench.loaded, path, value, said.unit) if value > 0.0 else None
+        change = bench.typed(path, value, said.unit) if value > 0.0 else None
         if change is None:
             return ()
         found.append(change)

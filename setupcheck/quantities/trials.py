@@ -6,6 +6,7 @@ from collections.abc import Callable, Mapping, Sequence
 from dataclasses import field
 
 from setupcheck.errors import JobError
+from setupcheck.jobfile.changing import Change
 from setupcheck.jobfile.editing import Edit, edited
 from setupcheck.jobfile.reading import LoadedJob
 from setupcheck.ledger.figures import Figure
@@ -16,6 +17,7 @@ from setupcheck.quantities.requirements import Stack, read_stack
 from setupcheck.quantities.route import walk
 from setupcheck.quantities.shop import Floor
 from setupcheck.quantities.stacks import build
+from setupcheck.quantities.typed_entry import shown, typed_change
 from setupcheck.record import record
 
 MOST_WALKS = 300
@@ -54,7 +56,15 @@ class Bench:
     most: int = MOST_WALKS
     walks: int = 0
     met: bool = False
+    _typed: dict[tuple[str, str], Change | None] = field(default_factory=dict)
     _walked: dict[tuple[Edit, ...], Floor | None] = field(default_factory=dict)
+
+    def typed(self, path: str, value: float, unit: str) -> Change | None:
+        """What to type so that an entry says a value; None where one number cannot say it. Read back once for each value."""
+        key = path, shown(value, unit, inches=self.loaded.job.units == "in")
+        if key not in self._typed:
+            self._typed[key] = typed_change(self.loaded, path, value, unit)
+        return self._typed[key]
 
     def changed(self, edits: Sequence[Edit]) -> Floor | None:
         """The route with an edit; None where the reader or the walk refuses it. Walked once for each edit."""

@@ -152,7 +152,8 @@ def _band(loaded: LoadedJob, one: Standing, node: Round, holder: Setup, name: st
     plain_size = size.fit is None and size.lower is None and size.upper is None and size.measured is None
     if node.kind != "cylinder" or not plain_size or WIDE > OF_ITS_PARENT * (node.high - node.low):
         return None
-    for low, high in ((node.high - WIDE, node.high), (node.low, node.low + WIDE)):
+    ends = ((node.low, node.low + WIDE), (node.high - WIDE, node.high))
+    for low, high in ends if holder.looks_at_tool == -1 else reversed(ends):  # the end at the tool first
         if _covered(loaded, one, holder, low, high) or _crowded(loaded, one, node, low, high):
             continue
         diameter = size.value - 2.0 * SKIM

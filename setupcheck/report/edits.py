@@ -1,4 +1,4 @@
-"""Edits of a job file as they are typed: options of `vary`, lines of YAML, or a move of blocks."""
+"""Edits of a job file as they are typed: options of `vary`, what is taken out or exchanged, and lines of YAML."""
 
 from __future__ import annotations
 
@@ -22,23 +22,21 @@ def as_typed(edits: Sequence[Edit], indent: str) -> Iterator[str]:
         elif isinstance(edit, Drop):
             text = f"{TAKE_OUT}{clean(edit.key)}"
         else:
-            text = f"{EXCHANGE}op {edit.first} and op {edit.second}"
+            text = f"{EXCHANGE}setups.{edit.first} and setups.{edit.second} (the blocks change places, the numbers stay)"
         yield from wrap(text, first=indent, rest=f"{indent}    ")
 
 
 def as_yaml(edits: Sequence[Edit], indent: str) -> Iterator[str]:
-    """What the file says then, under the key it belongs to."""
+    """What the file says then, each entry under the key it belongs to; nothing of what is only taken out or exchanged."""
+    around = ""
     for edit in edits:
-        if isinstance(edit, Change):
-            around, _, key = clean(edit.key).rpartition(".")
-            yield from wrap(f"under {_words(around)}:", first=indent, rest=f"{indent}    ")
-            yield from wrap(f"{key}: {clean(edit.value)}", first=f"{indent}    ", rest=f"{indent}      ")
-        elif isinstance(edit, Drop):
-            around, _, key = clean(edit.key).rpartition(".")
-            yield from wrap(f"under {_words(around)}: no {key}:", first=indent, rest=f"{indent}    ")
-        else:
-            says = f"what stands under `- op: {edit.first}` and `- op: {edit.second}` changes places; the numbers stay"
-            yield from wrap(says, first=indent, rest=f"{indent}    ")
+        if not isinstance(edit, Change):
+            continue
+        where, _, key = clean(edit.key).rpartition(".")
+        if where != around:
+            yield from wrap(f"{_words(where)}:", first=indent, rest=f"{indent}    ")
+            around = where
+        yield from wrap(f"{key}: {clean(edit.value)}", first=f"{indent}    ", rest=f"{indent}      ")
 
 
 def _words(path: str) -> str:

@@ -42,8 +42,10 @@ def _one(found: Review, one: Proposal, number: int, words: Words) -> Iterator[st
     for op, caution in one.cautions:
         yield from wrap(f"It brings the caution {caution}{f' to op {op}' if op else ''}.", first="     ", rest="     ")
     yield from as_typed(one.edits, "     ")
-    yield "     in the file:"
-    yield from as_yaml(one.edits, "       ")
+    snippet = list(as_yaml(one.edits, "       "))
+    if snippet:
+        yield "     in the file, under"
+        yield from snippet
 
 
 def _gain(one: Proposal, words: Words) -> str:

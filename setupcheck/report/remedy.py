@@ -29,11 +29,12 @@ MOST_TIGHT = 3
 def as_text(found: Review, mended: Mended) -> str:
     """All of it."""
     words = Words(found)
+    cured = {key for one in mended.proposals for key in one.cures}
     lines: list[str] = []
     for part in (
         _head(found, mended),
         proposals_as_text(found, mended, words) if mended.worst is not None else iter(()),
-        *(_table(found, table, words) for table in mended.tables),
+        *(_table(found, table, words, cured=table.key in cured) for table in mended.tables),
         _enough(found, mended, words),
         _pays(found, mended.pays, words),
         wrap(HOW),
@@ -61,7 +62,7 @@ def _head(found: Review, mended: Mended) -> Iterator[str]:
         yield from wrap(f"Beside them the review has findings that fail or are open ({rules}), which it tells what to do for.")
 
 
-def _table(found: Review, table: Table, words: Words) -> Iterator[str]:
+def _table(found: Review, table: Table, words: Words, *, cured: bool) -> Iterator[str]:
     key = table.key
     says = f"{words.title(key)}: {words.worst(key)}, {words.limit(key)}"
     if table.tight:
@@ -75,12 +76,13 @@ def _table(found: Review, table: Table, words: Words) -> Iterator[str]:
         yield from _rows(found, rows, key, words)
         return
     yield from wrap(f"OUTSIDE  {says}; over by {words.size(key, table.over)}", rest="    ")
-    if table.rows:
+    if table.enough or table.some:
         yield TABLE
     yield from _rows(found, (*table.enough, *table.some), key, words)
     yield from _spread(table, words)
     yield from _no_help(table, words)
-    yield from _advice(found, table)
+    if not cured:
+        yield from _advice(found, table)
 
 
 def _rows(found: Review, rows: Sequence[Row], key: str, words: Words) -> Iterator[str]:
@@ -102,7 +104,7 @@ def entry_in_words(entry: Entry) -> str:
     """What an entry is the error of; one that stands for several cuts by what they share."""
     where, what = cause_in_parts(entry.causes[0].key)
     if len(entry.causes) > 1:
-        ops = ", ".join(str(op) for op in dict.fromkeys(c.op for c in entry.causes) if op is not None)
+        ops = ", ".join(str(op) for op in sorted({c.op for c in entry.causes if c.op is not None}))
         what = what.partition(" in cutting ")[0]
         where = f"op {ops}" if ops else where
     text = f"{where}, {what}" if where else what
