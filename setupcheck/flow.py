@@ -177,7 +177,9 @@ def mend(
 
     def judge(edits: Sequence[Edit]) -> Judged:
         after = review(edited(before.loaded, edits), house=house, on=on, devices=devices)
-        return Judged(after.verdict, _counts(after), frozenset((line.op, line.id) for line in after.evaluation.cautions))
+        return Judged(
+            after.verdict, _counts(after), frozenset((line.op, line.id) for line in after.evaluation.cautions)
+        )
 
     now = Judged(before.verdict, _counts(before), frozenset((c.op, c.id) for c in before.evaluation.cautions))
     return before, mended(before.loaded, before.floor, before.results, now, judge, again, of=of)

@@ -1,4 +1,4 @@
-"""A job with entries set or taken out and operations exchanged, read again by the same reader: what can be printed can be tried."""
+"""A job with entries set or taken out and operations exchanged, read again by the same reader: what is printed was tried."""
 
 from __future__ import annotations
 

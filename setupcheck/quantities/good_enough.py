@@ -127,9 +127,7 @@ def _room(entry: Entry, result: Result) -> float:
         return math.inf
     for _ in range(24):
         half = (inside + outside) / 2.0
-        inside, outside = (
-            (half, outside) if _excess(at(result.figure, entry, half), result) <= 0.0 else (inside, half)
-        )
+        inside, outside = (half, outside) if _excess(at(result.figure, entry, half), result) <= 0.0 else (inside, half)
     return inside
 
 

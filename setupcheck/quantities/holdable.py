@@ -42,8 +42,8 @@ def standing_before(loaded: LoadedJob, setup: Setup) -> list[Standing]:
             both = [together[loaded.ref(text).part] for text in (before.join.outer, before.join.inner)]
             together.update(dict.fromkeys(both[0] | both[1], both[0] | both[1]))
             for text in (before.join.outer, before.join.inner):  # covered from now on
-                ref = loaded.ref(text)
-                made.pop((ref.part, ref.surface), None)
+                covered = loaded.ref(text)
+                made.pop((covered.part, covered.surface), None)
             continue
         for text, cut in before.cut.items():
             ref = bare(loaded, text, before)
@@ -61,9 +61,7 @@ def standing_before(loaded: LoadedJob, setup: Setup) -> list[Standing]:
 
 def rounds(found: list[Standing]) -> list[tuple[Standing, Round]]:
     """Cylinders and bores among them."""
-    return [
-        (one, one.node) for one in found if isinstance(one.node, Round) and one.node.kind in ("cylinder", "bore")
-    ]
+    return [(one, one.node) for one in found if isinstance(one.node, Round) and one.node.kind in ("cylinder", "bore")]
 
 
 def faces(found: list[Standing]) -> list[tuple[Standing, Flat]]:

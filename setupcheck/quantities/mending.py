@@ -91,9 +91,13 @@ def _asked(bench: Bench, of: str | None) -> None:
     if of in known:
         return
     if of in {f"require[{i + 1}]" for i in range(there)}:
-        raise SetupcheckError(f"{of} cannot be told yet, so nothing can be tried for it. Review the job and fill what is open")
+        raise SetupcheckError(
+            f"{of} cannot be told yet, so nothing can be tried for it. Review the job and fill what is open"
+        )
     says = f"it has require[1] to require[{there}]" if there else "it asks for nothing"
-    raise SetupcheckError(f"--of {printable(of)[:60]!r} is no requirement of this job: {says}. Write it as in --of 'require[1]'")
+    raise SetupcheckError(
+        f"--of {printable(of)[:60]!r} is no requirement of this job: {says}. Write it as in --of 'require[1]'"
+    )
 
 
 def _judged(one: Proposal, now: Judged, judge: Callable[[Sequence[Edit]], Judged]) -> Proposal | None:

@@ -9,8 +9,8 @@ from setupcheck.jobfile.changing import Change
 from setupcheck.jobfile.editing import Drop, Edit, Exchange
 from setupcheck.jobfile.reading import LoadedJob
 from setupcheck.jobfile.setups import Setup
-from setupcheck.quantities.finished import finished, to_come
-from setupcheck.quantities.proposals import NO_LOSS, Idea, Proposal, offered
+from setupcheck.quantities.finished import finished
+from setupcheck.quantities.proposals import NO_LOSS, Editor, Idea, Proposal, offered
 from setupcheck.quantities.trials import Bench
 from setupcheck.yamlfile import Data
 
@@ -27,18 +27,27 @@ def orders(bench: Bench, key: str) -> Iterator[Proposal]:
                 yield found
         if _may_swap(bench.loaded, first, second):
             edits: tuple[Edit, ...] = (Exchange(first.op, second.op),)
-            found = offered(bench, key, Idea("swap", second.op, first.op), lambda _, e=edits: e)
+            found = offered(bench, key, Idea("swap", second.op, first.op), always(edits))
             if found is not None:
                 yield found
+
+
+def always(edits: tuple[Edit, ...]) -> Editor:
+    """An editor of an idea without a dial reading."""
+    return lambda _: edits
 
 
 def _merged(bench: Bench, key: str, first: Setup, second: Setup) -> Proposal | None:
     """The second setup cut in the holding of the first. It saves an opening of the chuck where no stack loses by it."""
     path = f"setups.{second.op}"
     holder = first.keeps if first.keeps is not None else first.op
-    edits: tuple[Edit, ...] = (Drop(f"{path}.hold"), Drop(f"{path}.looks_at_tool"), Change(f"{path}.keeps", str(holder)))
+    edits: tuple[Edit, ...] = (
+        Drop(f"{path}.hold"),
+        Drop(f"{path}.looks_at_tool"),
+        Change(f"{path}.keeps", str(holder)),
+    )
     idea = Idea("merge", second.op, holder, with_it=tuple(second.cut))
-    found = offered(bench, key, idea, lambda _: edits)
+    found = offered(bench, key, idea, always(edits))
     if found is None:
         return None
     base = {k: r.margin_share or 0.0 for k, r in bench.results.items()}
@@ -123,8 +132,3 @@ def _texts(data: Data) -> Iterator[str]:
     elif isinstance(data, list):
         for one in data:
             yield from _texts(one)
-
-
-def openings(loaded: LoadedJob) -> int:
-    """How often the part is held anew in the setups still to come."""
-    return sum(setup.hold is not None for setup in to_come(loaded.job))

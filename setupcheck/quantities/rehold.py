@@ -10,8 +10,8 @@ from setupcheck.jobfile.models import Deviation, Flat, Round
 from setupcheck.jobfile.reading import LoadedJob
 from setupcheck.jobfile.setups import Centre, Setup
 from setupcheck.notation import plain
-from setupcheck.quantities.gates import origins, reaches
 from setupcheck.quantities.finished import finished
+from setupcheck.quantities.gates import origins, reaches
 from setupcheck.quantities.holdable import Standing, faces, rounds, standing_before
 from setupcheck.quantities.orders import cut_in
 from setupcheck.quantities.proposals import Editor, Idea, Proposal, dial, offered
@@ -162,7 +162,8 @@ def _height(setup: Setup, now: Centre, node: Round) -> float | None:
         return now.at
     inset = min(FROM_THE_END, (node.high - node.low) / 4.0)
     ends = (node.low + inset, node.high - inset)
-    return max(ends, key=lambda z: abs(z - second.at)) if second.at is not None else None
+    far = second.at
+    return max(ends, key=lambda z: abs(z - far)) if far is not None else None
 
 
 def square_move(loaded: LoadedJob, setup: Setup, one: Standing, node: Flat, part: str) -> Move | None:
@@ -212,5 +213,3 @@ def bound_of(given: Deviation | None) -> float | None:
 def in_file(mm: float, loaded: LoadedJob) -> str:
     """A size as a bare number of the file."""
     return plain(round(mm / 25.4, 4) if loaded.job.units == "in" else round(mm, 3))
-
-

@@ -50,7 +50,7 @@ def _spellings(loaded: LoadedJob, path: str, value: float, unit: str) -> list[Ch
     node: Data = loaded.tree.data
     try:
         for step in loaded.loc(path):
-            node = node[step]  # type: ignore[index, call-overload]
+            node = node[step]  # type: ignore[index]
     except (KeyError, IndexError, TypeError):
         node = None
     inches = loaded.job.units == "in"

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterator
+from collections.abc import Container, Iterator
 from dataclasses import replace
 
 from setupcheck.jobfile.changing import Change
@@ -14,7 +14,7 @@ from setupcheck.quantities.devices import DEVICES
 from setupcheck.quantities.finished import finished
 from setupcheck.quantities.holdable import Standing, faces, rounds, standing_before
 from setupcheck.quantities.orders import bare, cut_in, part_of
-from setupcheck.quantities.proposals import Editor, Idea, Proposal, offered
+from setupcheck.quantities.proposals import Editor, Proposal, offered
 from setupcheck.quantities.rehold import Move, centre_move, holds_on_the_chain, in_file, square_move
 from setupcheck.quantities.route import machine_of
 from setupcheck.quantities.trials import Bench
@@ -114,7 +114,7 @@ def places(loaded: LoadedJob, maker: Setup, later: Setup) -> Iterator[Witness]:
         band = _band(loaded, one, round_, holder, free_name(f"band-{maker.op}", taken))
         if band is not None:
             yield band
-    seated = {bare(loaded, e.on, holder) for e in _seats(holder)}
+    seated = {bare(loaded, on, holder) for on in _seats(holder)}
     for one, flat in faces(there):
         if (part, one.name) not in seated and flat.facing == holder.looks_at_tool:
             ring = _ring(loaded, one, flat, free_name(f"ring-{maker.op}", taken))
@@ -122,9 +122,8 @@ def places(loaded: LoadedJob, maker: Setup, later: Setup) -> Iterator[Witness]:
                 yield ring
 
 
-def free_name(wanted: str, taken: object) -> str:
+def free_name(wanted: str, taken: Container[str]) -> str:
     """A name that no surface of the part has yet."""
-    assert hasattr(taken, "__contains__")
     name, n = wanted, 1
     while name in taken:
         n += 1
@@ -132,9 +131,10 @@ def free_name(wanted: str, taken: object) -> str:
     return name
 
 
-def _seats(setup: Setup) -> list[object]:
-    entries = [getattr(setup.hold, step) for step in ("square", "stop")] if setup.hold is not None else []
-    return [entry for entry in entries if entry is not None]
+def _seats(setup: Setup) -> list[str]:
+    """Faces that a setup is squared on or stopped by."""
+    entries = (setup.hold.square, setup.hold.stop) if setup.hold is not None else ()
+    return [entry.on for entry in entries if entry is not None]
 
 
 def _cut_until(loaded: LoadedJob, maker: Setup, later: Setup) -> set[tuple[str, str]]:

@@ -22,7 +22,9 @@ def as_typed(edits: Sequence[Edit], indent: str) -> Iterator[str]:
         elif isinstance(edit, Drop):
             text = f"{TAKE_OUT}{clean(edit.key)}"
         else:
-            text = f"{EXCHANGE}setups.{edit.first} and setups.{edit.second} (the blocks change places, the numbers stay)"
+            text = (
+                f"{EXCHANGE}setups.{edit.first} and setups.{edit.second} (the blocks change places, the numbers stay)"
+            )
         yield from wrap(text, first=indent, rest=f"{indent}    ")
 
 

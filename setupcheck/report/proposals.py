@@ -13,7 +13,9 @@ from setupcheck.report.stacks_in_words import Words
 from setupcheck.report.wording import clean, on_the_dial, wrap
 
 MET = "The most routes that are tried in one run were tried; there may be better ones."
-STRAIN = "Nothing here counts what heat and strain of the roughing move in the part: let it cool before its finishing cuts."
+STRAIN = (
+    "Nothing here counts what heat and strain of the roughing move in the part: let it cool before its finishing cuts."
+)
 
 
 def proposals_as_text(found: Review, mended: Mended, words: Words) -> Iterator[str]:
@@ -90,7 +92,11 @@ def idea_in_words(idea: Idea, *, inches: bool) -> str:
         case "stop":
             return f"stop op {idea.op} on {on}{made} instead of {was}"
     also = f"; {idea_in_words(idea.also, inches=inches)}" if idea.also is not None else ""
-    how = f"true it {DEVICES[idea.by].words} to {reading}" if idea.by != "indicator" else f"true it by indicator to {reading}"
+    how = (
+        f"true it {DEVICES[idea.by].words} to {reading}"
+        if idea.by != "indicator"
+        else f"true it by indicator to {reading}"
+    )
     return f"hold op {idea.op} on {on}{made or ','} instead of {was}, and {how}{also}"
 
 

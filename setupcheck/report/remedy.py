@@ -18,9 +18,7 @@ from setupcheck.report.remedies import STACK_RULES, remedy_in_words
 from setupcheck.report.stacks_in_words import Words
 from setupcheck.report.wording import clean, wrap
 
-HOW = (
-    "A --set is tried with `setupcheck vary JOB --set …`; one that runs over lines is typed in one, with a space at each break."
-)
+HOW = "A --set is tried with `setupcheck vary JOB --set …`; one that runs over lines is typed in one, with a space at each break."
 TABLE = f"  {'now':11}{'alone':11}cause"
 MOST_TIGHT = 3
 """Rows of a stack that is inside, but tight. Source: our screening choice."""
@@ -59,7 +57,9 @@ def _head(found: Review, mended: Mended) -> Iterator[str]:
     others = [f for f in found.evaluation.findings if f.verdict in ("fail", "open") and f.rule not in STACK_RULES]
     if others:
         rules = ", ".join(dict.fromkeys(f.rule for f in others))
-        yield from wrap(f"Beside them the review has findings that fail or are open ({rules}), which it tells what to do for.")
+        yield from wrap(
+            f"Beside them the review has findings that fail or are open ({rules}), which it tells what to do for."
+        )
 
 
 def _table(found: Review, table: Table, words: Words, *, cured: bool) -> Iterator[str]:
@@ -140,7 +140,9 @@ def _advice(found: Review, table: Table) -> Iterator[str]:
     """What the review itself advises, where no entry alone does it."""
     if table.enough:
         return
-    mine = [f for f in found.evaluation.findings if f.key == table.key and f.rule in STACK_RULES and f.verdict != "pass"]
+    mine = [
+        f for f in found.evaluation.findings if f.key == table.key and f.rule in STACK_RULES and f.verdict != "pass"
+    ]
     for finding in mine[:1]:
         yield from wrap(f"The review's own advice: {remedy_in_words(found, finding)}", first="  ", rest="      ")
 
@@ -191,7 +193,9 @@ def _pays(found: Review, pays: Sequence[Pays], words: Words) -> Iterator[str]:
     margin = pays[0].result.margin or 0.0
     for one in pays:
         was, then = (words.size(one.key, value) for value in (margin, one.margin))
-        yield from wrap(f"{entry_in_words(one.entry)}: margin {was} -> {then} ({one.entry.path})", first="  ", rest="      ")
+        yield from wrap(
+            f"{entry_in_words(one.entry)}: margin {was} -> {then} ({one.entry.path})", first="  ", rest="      "
+        )
     yield from wrap(
         f"Taken: each is found at {FOUND_AT:.0%} of what is planned for it, and then known to {KNOWN_TO:.0%} of that "
         "(expanded, k = 2). Only measuring tells.".replace("%", " %"),

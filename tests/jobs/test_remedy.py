@@ -150,9 +150,17 @@ def test_what_does_not_do_it_alone_leaves_the_stack_outside_at_its_last_decimal(
     loaded = job(name)
     for table in mended(name)[1].tables:
         for row in table.some[:3]:
-            least = '0.1"' if row.entry.says[0].unit == "arcsec" else "0.01 thou" if loaded.job.units == "in" else "0.1 um"
+            least = (
+                '0.1"' if row.entry.says[0].unit == "arcsec" else "0.01 thou" if loaded.job.units == "in" else "0.1 um"
+            )
             path = row.entry.path
-            if not path.startswith("setups.") or row.entry.says[0].least or len(row.entry.paths) > 1 or row.entry.also or path.endswith("length"):
+            if (
+                not path.startswith("setups.")
+                or row.entry.says[0].least
+                or len(row.entry.paths) > 1
+                or row.entry.also
+                or path.endswith("length")
+            ):
                 continue
             node: object = loaded.tree.data
             try:
@@ -161,7 +169,9 @@ def test_what_does_not_do_it_alone_leaves_the_stack_outside_at_its_last_decimal(
             except (KeyError, TypeError, IndexError):
                 continue
             if isinstance(node, dict):
-                path += ".measured" if "measured" in node else ".at_most" if "at_most" in node or "device" in node else ""
+                path += (
+                    ".measured" if "measured" in node else ".at_most" if "at_most" in node or "device" in node else ""
+                )
             if isinstance(node, str) and re.search(r"\d\s*±", node):
                 continue
             if isinstance(node, dict) and path == row.entry.path:
@@ -299,7 +309,7 @@ def test_a_job_that_fails_is_told_nothing_of_good_enough() -> None:
 
 def test_the_next_measurement_gives_what_is_said_of_a_length() -> None:
     """A bound of 15 um found at half of it and known to a tenth: 7.5 um and 1.5 Gaussian standard deviations of 1.5 um."""
-    found, all_of_it = mended("rotator-worm-wheel")
+    _, all_of_it = mended("rotator-worm-wheel")
     one = next(p for p in all_of_it.pays if p.entry.path == "setups.40.head.mid_plane.error")
     left = 7.5e-3 + 3.0 * 1.5e-3 / 2.0
     assert one.gain == pytest.approx(15e-3 - left)
@@ -419,7 +429,7 @@ def test_names_of_the_file_can_do_nothing_to_a_terminal_or_a_shell() -> None:
         texts()[HIDDEN]
         .replace("title: Feed rotator", 'title: "Feed \\x1b[31m rotator')
         .replace("worm wheel, 72 teeth\n", 'worm wheel, 72 teeth"\n', 1)
-        .replace("lathe-A", "\"lathe'; rm $(x)\"")
+        .replace("lathe-A", '"lathe\'; rm $(x)"')
         .replace("name: shim", 'name: "shim\\x1b[1m `x`"')
     )
     found, all_of_it = mend(read_job_text(text, "job.yaml"))
