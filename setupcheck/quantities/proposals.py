@@ -21,6 +21,8 @@ WORTH = 0.02
 """Share of the worst stack's limit that a proposal has to gain to be told. Source: our screening choice."""
 NO_LOSS = 1e-6
 """Share of its limit that a stack may lose where an order is to cost nothing: the noise of sums. Source: our choice."""
+ALIKE = 1e-3
+"""Share of a limit by which two gains may differ and still be alike. Source: our screening choice."""
 MOST_JUDGED = 12
 """Proposals that are put through every rule to find those that are told. Source: our screening choice."""
 
@@ -161,13 +163,19 @@ def best_of(
 
 def _rank(one: Proposal) -> tuple[float, ...]:
     order = ("merge", "re-hold", "square", "stop", "swap", "witness").index(one.idea.kind)
-    return one.left, -round(one.gain, 3), len(one.edits), order, -(one.idea.reading or 0.0), one.idea.op
+    return one.left, -round(one.gain / ALIKE), len(one.edits), order, -(one.idea.reading or 0.0), one.idea.op
 
 
 def _unlike(ranked: Iterable[Proposal]) -> Iterator[Proposal]:
-    """One proposal for each thing that is done: a second band on the same operation for the same later one says nothing new."""
+    """One proposal for each thing that is done: a second band on the same operation for the same later one says nothing new,
+    nor does another that only adds to one already told.
+    """
     seen = set()
+    told: list[Proposal] = []
     for one in ranked:
+        if any(set(other.edits) < set(one.edits) and other.gain >= one.gain - ALIKE for other in told):
+            continue  # what is told already gains as much with less
+        told.append(one)
         what = (one.idea.kind, one.idea.op, one.idea.other if one.idea.kind == "witness" else one.idea.on)
         if what not in seen:
             seen.add(what)

@@ -187,7 +187,7 @@ def square_move(loaded: LoadedJob, setup: Setup, one: Standing, node: Flat, part
 
 def _stop_move(loaded: LoadedJob, setup: Setup, one: Standing, node: Flat, part: str) -> Move | None:
     now = setup.hold.stop if setup.hold is not None else None
-    if now is None or one.called(part) == now.on or now.spacers or now.against is not None:
+    if now is None or one.called(part) == now.on or now.spacers or now.against or now.touches:
         return None
     old = loaded.job.parts[part].surfaces.get(now.on) if "." not in now.on else None
     error = bound_of(now.error)

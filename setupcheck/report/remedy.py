@@ -92,7 +92,13 @@ def _rows(found: Review, rows: Sequence[Row], key: str, words: Words) -> Iterato
         alone = shown(row.needed[0], row.entry.says[0].unit, inches=inches) if row.needed else "no"
         text = entry_in_words(row.entry)
         if not row.needed:
-            text += f": not by itself, still {words.size(key, row.still)} over without it"
+            left = words.size(key, row.still)
+            none = words.size(key, 0.0) == left
+            text += (
+                ": not by itself, it would have to be nothing"
+                if none
+                else f": not by itself, still {left} over without it"
+            )
         yield from wrap(text, first=f"  {now:11}{alone:11}", rest=" " * 24)
         if row.typed:
             yield from as_typed(row.typed, "      ")

@@ -120,6 +120,62 @@ require:
   - {what: run-out, of: ring.bore, about: ring.track, at_most: 40 um}
 """
 
+WRONG_FACE = """
+setupcheck: 1
+title: Flange whose pocket is squared and stopped on the wrong one of two faces
+units: mm
+parts:
+  flange:
+    material: C45
+    surfaces:
+      bar:    {kind: cylinder, diameter: 120, from: -5, to: 80, made: stock}
+      rim:    {kind: cylinder, diameter: 110, from: 0, to: 20}
+      nose:   {kind: cylinder, diameter: 70, from: 20, to: 40}
+      back:   {kind: face, at: 0, facing: -z, diameter: 110}
+      step:   {kind: face, at: 20, facing: +z, diameter: 110}
+      front:  {kind: face, at: 40, facing: +z, diameter: 70}
+      bore:   {kind: bore, diameter: 30 H7, from: 0, to: 40}
+      pocket: {kind: face, at: 6, facing: -z, diameter: 60}
+machines:
+  lathe-A: {kind: lathe, axis_runout: 2 um}
+setups:
+  - op: 10
+    machine: lathe-A
+    looks_at_tool: -z
+    hold:
+      centre:     {on: bar, by: three-jaw, at: 75, runout: 0.10 mm}
+      and_centre: {on: bar, by: three-jaw, at: 45, runout: 0.10 mm}
+    cut: {back: {error: 20 um}, rim: {}}
+  - op: 20
+    machine: lathe-A
+    looks_at_tool: +z
+    hold:
+      centre: {on: rim, by: soft-jaws, at: 8, runout: 20 um}
+      square: {on: back, by: jaws, face_runout: 20 um, across: 100}
+      stop:   {on: back, error: 20 um}
+    cut: {front: {error: 10 um, removes: [bar]}, nose: {}, bore: {}}
+  - op: 30
+    machine: lathe-A
+    looks_at_tool: +z
+    hold:
+      centre: {on: rim, by: soft-jaws, at: 8, runout: 20 um}
+      square: {on: back, by: jaws, face_runout: 20 um, across: 100}
+      stop:   {on: back, error: 20 um}
+    cut: {step: {error: 10 um}}
+  - op: 40
+    machine: lathe-A
+    looks_at_tool: -z
+    hold:
+      centre: {on: bore, by: indicator, runout: 5 um}
+      square: {on: step, by: parallels, face_runout: 5 um, across: 100}
+      stop:   {on: step, error: 5 um}
+    cut: {pocket: {error: 10 um}}
+require:
+  - {what: LENGTH}
+"""
+SQUARENESS = "squareness, of: flange.pocket, about: flange.bore, across: 60, at_most: 15 um"
+DEPTH = "length, of: flange.pocket, about: flange.front, between: [33.95 mm, 34.05 mm]"
+
 
 def statements(text: str) -> list[str]:
     """The lines of a printed remedy that are typed, each put together again where it runs over lines."""

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import json
 import re
+from dataclasses import replace
 from functools import cache
 from pathlib import Path
 
@@ -19,11 +20,15 @@ from setupcheck.jobfile.reading import LoadedJob, read_job_text
 from setupcheck.quantities.book import Known
 from setupcheck.quantities.judged import Result
 from setupcheck.quantities.mending import Mended
+from setupcheck.quantities.proposals import worst_of
+from setupcheck.quantities.rehold import reholds
 from setupcheck.quantities.single_causes import IN_HAND, Row, Table
+from setupcheck.quantities.trials import Bench
+from setupcheck.quantities.witness import witnesses
 from setupcheck.report.remedy import as_text
 from setupcheck.report.remedy_data import as_data
 from setupcheck.shipped import shipped
-from tests.jobs.remedy_jobs import COVERED_BORE, WRONG_ORDER, edits_in, proposals_in
+from tests.jobs.remedy_jobs import COVERED_BORE, DEPTH, SQUARENESS, WRONG_FACE, WRONG_ORDER, edits_in, proposals_in
 from tests.jobs.test_typed_back import SPOILT
 
 GOOD = sorted(shipped("jobs").glob("*.yaml"))
@@ -47,7 +52,13 @@ def texts() -> dict[str, str]:
     for name in SLIPS:
         stem, good, bad = SPOILT[name]
         found[name] = found[stem].replace(good, bad)
-    return {**found, "a covered bore": COVERED_BORE, "the wrong order": WRONG_ORDER}
+    return {
+        **found,
+        "a covered bore": COVERED_BORE,
+        "the wrong order": WRONG_ORDER,
+        "squared on the wrong face": WRONG_FACE.replace("LENGTH", SQUARENESS),
+        "stopped on the wrong face": WRONG_FACE.replace("LENGTH", DEPTH),
+    }
 
 
 def job(name: str) -> LoadedJob:
@@ -201,7 +212,18 @@ def test_a_kept_device_changes_in_all_its_setups() -> None:
 # -- other datums and orders
 
 
-@pytest.mark.parametrize("name", [HIDDEN, "datum-cut-away", "coupling-hub", "a covered bore", "the wrong order"])
+PROPOSED = (
+    HIDDEN,
+    "datum-cut-away",
+    "coupling-hub",
+    "a covered bore",
+    "the wrong order",
+    "squared on the wrong face",
+    "stopped on the wrong face",
+)
+
+
+@pytest.mark.parametrize("name", PROPOSED)
 def test_a_proposal_does_what_it_says_and_spoils_nothing(name: str) -> None:
     before, all_of_it = mended(name)
     text = as_text(before, all_of_it)
@@ -254,6 +276,38 @@ def test_the_better_order_is_found_and_reviews_better() -> None:
     assert [s.op for s in after.loaded.job.setups] == [10, 20, 30]
     assert not outside(after)
     assert first.cautions == ()
+
+
+@pytest.mark.parametrize(
+    ("name", "says", "key"),
+    [
+        (
+            "squared on the wrong face",
+            "Square op 40 on front, finished in op 20, instead of step, to 5.0 um.",
+            "square",
+        ),
+        ("stopped on the wrong face", "Stop op 40 on front, finished in op 20, instead of step.", "stop"),
+    ],
+)
+def test_the_face_that_was_made_with_the_datum_is_named(name: str, says: str, key: str) -> None:
+    found, all_of_it = mended(name)
+    one = next(p for p in all_of_it.proposals if p.idea.kind == key)
+    assert [e.key for e in one.edits if isinstance(e, Change)] == [f"setups.40.hold.{key}"]
+    assert says in " ".join(as_text(found, all_of_it).split())
+    assert [p.idea.kind for p in all_of_it.proposals if p.idea.also is not None] == []  # it adds nothing to that
+
+
+def test_the_most_routes_that_are_tried_are_kept_to_and_said() -> None:
+    found = review(job("the wrong order"))
+    bench = Bench(found.loaded, found.floor, found.results, most=3)
+    key = worst_of(bench)
+    assert key is not None
+    tried = [*reholds(bench, key), *witnesses(bench, key)]
+    assert bench.walks == 3 and bench.met
+    assert len(tried) <= 3
+    _, whole = mended("the wrong order")
+    text = as_text(found, replace(whole, met=True, proposals=()))
+    assert "The most routes that are tried in one run were tried; there may be better ones." in " ".join(text.split())
 
 
 def test_an_order_that_needs_what_comes_later_is_not_offered() -> None:
