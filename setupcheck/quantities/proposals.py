@@ -23,6 +23,9 @@ NO_LOSS = 1e-6
 """Share of its limit that a stack may lose where an order is to cost nothing: the noise of sums. Source: our choice."""
 ALIKE = 1e-3
 """Share of a limit by which two gains may differ and still be alike. Source: our screening choice."""
+STEP = 0.05
+"""Step of a limit in which gains are ranked; within it the smaller change and the coarser reading come first. Source: our
+screening choice."""
 MOST_JUDGED = 12
 """Proposals that are put through every rule to find those that are told. Source: our screening choice."""
 
@@ -33,7 +36,7 @@ class Idea:
 
     kind     re-hold, square, stop, witness, swap or merge
     op       operation that is changed;  other  the one before it that comes into it (makes the datum, gives its holding)
-    on, was  surface it is held on now and before;  by  the device;  parent  surface a witness is turned on
+    on, was  surface it is held on now and before;  by, than  the device now and before;  parent  surface a witness is turned on
     with_it  surfaces finished in that holding;  reading  to true it to [mm];  also  a second part of the same change
     wide     of a witness [mm];  at  its two ends, or where its face stands [mm]
     """
@@ -44,6 +47,7 @@ class Idea:
     on: str = ""
     was: str = ""
     by: str = ""
+    than: str = ""
     parent: str = ""
     with_it: tuple[str, ...] = ()
     reading: float | None = None
@@ -163,7 +167,7 @@ def best_of(
 
 def _rank(one: Proposal) -> tuple[float, ...]:
     order = ("merge", "re-hold", "square", "stop", "swap", "witness").index(one.idea.kind)
-    return one.left, -round(one.gain / ALIKE), len(one.edits), order, -(one.idea.reading or 0.0), one.idea.op
+    return one.left, -round(one.gain / STEP), len(one.edits), order, -(one.idea.reading or 0.0), one.idea.op
 
 
 def _unlike(ranked: Iterable[Proposal]) -> Iterator[Proposal]:

@@ -79,6 +79,7 @@ def reholds(bench: Bench, key: str) -> Iterator[Proposal]:
                     move.idea.on,
                     move.idea.was,
                     move.idea.by,
+                    than=move.idea.than,
                     reading=move.idea.reading,
                     also=other.idea,
                 )
@@ -127,14 +128,14 @@ def moves_of(loaded: LoadedJob, setup: Setup) -> tuple[list[Move], list[Move], l
 def centre_move(
     loaded: LoadedJob, setup: Setup, now: Centre, one: Standing, node: Round, part: str, *, shortly: bool = False
 ) -> Move | None:
-    """The axis taken from another cylinder or bore, trued by a dial.
+    """The axis taken from another cylinder or bore, trued by a dial; or from the same one, where no dial trues it yet.
 
     The reading is that of the hold as it is where it is trued by a dial already, else the typical one of the device.
     shortly  only a narrow band, which no jaw holds
     """
     name = one.called(part)
-    if name == now.on:
-        return None
+    if name == now.on and now.by in TRUED:
+        return None  # it is trued on it already
     _, machine = machine_of(loaded, setup)
     turned = machine is None or machine.kind in ("lathe", "grinder")
     jaws = now.by in JAWS or now.by == "four-jaw"
@@ -149,7 +150,7 @@ def centre_move(
     height = _height(setup, now, node)
     at = f", at: {in_file(height, loaded)}" if height is not None else ""
     path = f"setups.{setup.op}.hold.centre"
-    idea = Idea("re-hold", setup.op, one.made_at, name, now.on, by, reading=reading)
+    idea = Idea("re-hold", setup.op, one.made_at, name, now.on, by, than=now.by, reading=reading)
     return Move(idea, path, f"{{on: {name}, by: {by}{at}, runout: {READING}}}", f"{path}.runout")
 
 

@@ -67,6 +67,8 @@ def idea_in_words(idea: Idea, *, inches: bool) -> str:
 
     >>> idea_in_words(Idea("re-hold", 50, 30, "hub", "rim", "four-jaw", reading=0.0077), inches=False)
     'hold op 50 on hub, finished in op 30, instead of rim, and true it in four-jaw chuck to 7.7 um'
+    >>> idea_in_words(Idea("re-hold", 30, 10, "bore", "bore", "indicator", "edge-finder", reading=0.003), inches=False)
+    'true bore in op 30 by indicator to 3.0 um; now it is found by edge finder'
     """
     on, was = clean(idea.on), clean(idea.was)
     reading = on_the_dial(idea.reading, inches=inches) if idea.reading is not None else ""
@@ -97,6 +99,9 @@ def idea_in_words(idea: Idea, *, inches: bool) -> str:
         if idea.by != "indicator"
         else f"true it by indicator to {reading}"
     )
+    if on == was:
+        trued = how.replace("true it", f"true {on} in op {idea.op}", 1)
+        return f"{trued}; now it is {DEVICES[idea.than].words}{also}"
     return f"hold op {idea.op} on {on}{made or ','} instead of {was}, and {how}{also}"
 
 
