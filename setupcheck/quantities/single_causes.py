@@ -37,7 +37,7 @@ class Entry:
 
     paths    where its numbers stand;  also  entries that speak of the same kept device and change with it
     says     what each path says now
-    typical  name of the typical value that stands in for it, or ""
+    typical  name of the typical value, or of the shop's own record, that stands in for it, or ""
     """
 
     paths: tuple[str, ...]
@@ -140,7 +140,8 @@ def entries(loaded: LoadedJob, causes: Sequence[Cause]) -> Iterator[Entry | Caus
             yield from group
             continue
         also = tuple(twins(loaded, paths[0])) if first.shared else ()
-        yield Entry(paths, tuple(group), known, also, first.rests_on)
+        rests_on = first.rests_on or next(iter(sorted(loaded.owned(*paths))), "")
+        yield Entry(paths, tuple(group), known, also, rests_on)
 
 
 def tables(bench: Bench, *, of: str | None = None) -> tuple[Table, ...]:

@@ -11,6 +11,7 @@ from setupcheck.quantities.good_enough import FOUND_AT, KNOWN_TO, PLENTY, Enough
 from setupcheck.quantities.mending import Mended
 from setupcheck.quantities.single_causes import Entry, Row, Table
 from setupcheck.quantities.typed_entry import shown
+from setupcheck.quantities.typical import is_own
 from setupcheck.report.causes import cause_in_parts, cause_in_words
 from setupcheck.report.edits import as_typed
 from setupcheck.report.proposals import proposals_as_text
@@ -114,6 +115,8 @@ def entry_in_words(entry: Entry) -> str:
         what = what.partition(" in cutting ")[0]
         where = f"op {ops}" if ops else where
     text = f"{where}, {what}" if where else what
+    if is_own(entry.typical):
+        return f"{text}, from the shop's record"
     return f"{text}, typical value" if entry.typical else text
 
 

@@ -502,3 +502,33 @@ def test_names_of_the_file_can_do_nothing_to_a_terminal_or_a_shell() -> None:
     json.dumps(as_data(found, all_of_it))
     assert "\\u001b" not in json.dumps(as_data(found, all_of_it)["proposals"])
     assert edits_in(proposals_in(printed)[0])
+
+
+def test_the_shops_own_record_counts_in_every_trial(tmp_path: Path) -> None:
+    record = tmp_path / "devices.csv"
+    rows = "".join(
+        f"shimmed-jaws,runout,2026-0{i}-01,{size} um,\n" for i, size in enumerate((30, 40, 30, 50, 40, 30), 1)
+    )
+    record.write_text("device,what,date,value,note\n" + rows, encoding="utf-8")
+    found, all_of_it = mend(job(HIDDEN), devices=record)
+    assert found.devices is not None
+    row = next(r for t in all_of_it.tables for r in t.rows if r.entry.path == "setups.50.hold.centre.runout")
+    assert 0.04 < row.entry.says[0].now < 0.1
+    assert "in jaws over shims, from the shop's record" in " ".join(as_text(found, all_of_it).split())
+    after = review(edited(job(HIDDEN), all_of_it.proposals[0].edits), devices=record)
+    assert not outside(after)
+    key = all_of_it.worst
+    assert key is not None
+    assert after.results[key].margin_share == pytest.approx(all_of_it.proposals[0].after)
+    typed = [(t, r) for t in all_of_it.tables for r in t.enough if r.typed and not t.tight]
+    assert typed
+    for table, one in typed[:4]:
+        margin = review(edited(job(HIDDEN), one.typed), devices=record).results[table.key].margin
+        assert margin is not None and margin >= -1e-9
+
+
+def test_a_house_or_day_that_is_not_there_is_refused(tmp_path: Path) -> None:
+    house = tmp_path / "house.yaml"
+    code, text = run("jobs/coupling-hub.yaml", "--house", str(house))
+    assert code == 2 and "house.yaml" in text
+    assert run("jobs/coupling-hub.yaml", "--on", "2027-02-30")[0] == 2
