@@ -62,6 +62,7 @@ if TYPE_CHECKING:
     from setupcheck.division.results import Reduced
     from setupcheck.jobfile.changing import Change
     from setupcheck.quantities.against import Against
+    from setupcheck.quantities.mending import Mended
     from setupcheck.quantities.own_values import RecordUse
     from setupcheck.quantities.remedies import Remedy
     from setupcheck.quantities.teeth_read import TeethRead
@@ -180,6 +181,45 @@ def vary(
     with from_set(changes):  # also what shows only along the route
         after = review(changed(before.loaded, changes), house=house, on=on, devices=devices)
     return Varied(before, after, tuple(changes))
+
+
+def mend(
+    job: LoadedJob | str | Path,
+    *,
+    of: str | None = None,
+    house: str | Path | None = None,
+    on: str | None = None,
+    devices: str | Path | None = None,
+) -> tuple[Review, Mended]:
+    """Judge a job, and find what would bring it inside: entries, datums, orders; or what is good enough already.
+
+    of  one requirement alone, `require[2]`
+    Raises: JobError; SetupcheckError for a requirement that is not there; RuleBookError.
+    """
+    from setupcheck.jobfile.editing import Edit, edited  # no review needs them
+    from setupcheck.quantities.mending import Judged, mended
+
+    before = review(job, house=house, on=on, devices=devices)
+
+    def again(loaded: LoadedJob) -> LoadedJob:
+        return with_devices(loaded, devices)[0] if devices is not None else loaded
+
+    def judge(edits: Sequence[Edit]) -> Judged:
+        after = review(edited(before.loaded, edits), house=house, on=on, devices=devices)
+        return Judged(
+            after.verdict, _counts(after), frozenset((line.op, line.id) for line in after.evaluation.cautions)
+        )
+
+    now = Judged(before.verdict, _counts(before), frozenset((c.op, c.id) for c in before.evaluation.cautions))
+    return before, mended(before.loaded, before.floor, before.results, now, judge, again, of=of)
+
+
+def _counts(found: Review) -> dict[tuple[str, str], int]:
+    """How many findings each rule has at each level."""
+    counts: dict[tuple[str, str], int] = {}
+    for one in found.evaluation.findings:
+        counts[one.rule, one.verdict] = counts.get((one.rule, one.verdict), 0) + 1
+    return counts
 
 
 def with_devices(loaded: LoadedJob, path: str | Path) -> tuple[LoadedJob, RecordUse]:

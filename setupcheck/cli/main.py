@@ -25,6 +25,7 @@ from setupcheck.cli import (  # noqa: E402
     new,
     readings,
     record,
+    remedy,
     review,
     rules,
     schema,
@@ -52,6 +53,7 @@ app.command("index")(index.command)
 app.command("record")(record.command)
 app.command("readings")(readings.command)
 app.command("vary")(vary.command)
+app.command("remedy")(remedy.command)
 app.command("rules")(rules.command)
 app.command("sheet")(sheet.command)
 app.command("schema")(schema.command)

@@ -12,6 +12,9 @@ from setupcheck.record import record
 LENGTHS_OF_A_DIVISION = ("centring", "blocks", "x", "y")
 """Keys under `divide` that state a length; all others state an angle."""
 
+ANGLES = (".divide.", ".tilt", "shaft_angle", ".head.uncertainty", ".turned")
+"""What stands in the path of an entry that states an angle."""
+
 
 @record
 class Stated:
@@ -67,6 +70,6 @@ def stated(loaded: LoadedJob, path: str, cause: Cause | None = None) -> Stated |
         if path.endswith(".polygon_tilt"):  # it counts by its square
             return None
         length = path.rpartition(".")[2] in LENGTHS_OF_A_DIVISION
-        angular = not length and any(word in path for word in (".divide.", ".tilt", "shaft_angle"))
+        angular = not length and any(word in path for word in ANGLES)
         return Stated(node, "arcsec" if angular else "um")
     return None

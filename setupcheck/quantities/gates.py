@@ -396,5 +396,6 @@ def scaled(figure: Figure, cause: Cause, factor: float) -> Figure:
             replace(s, cause=new, bound=s.bound * factor) if s.cause == cause else s for s in pattern.scatter
         ),
         shaped=tuple(replace(s, cause=new) if s.cause == cause else s for s in pattern.shaped),
+        radial=pattern.radial.with_cause(cause, new),
     )
     return replace(figure, pattern=divided)  # type: ignore[type-var]

@@ -310,7 +310,7 @@ def _by_weight(figure: Figure) -> list[Cause]:
 
 def _changes(loaded: LoadedJob, cause: Cause, entries: list[tuple[str, Stated | None]], factor: float) -> list[Change]:
     """One change for each entry the cause rests on (two for a zero along x and y), with the twins of a kept device."""
-    also = tuple(path for path in _twins(loaded, entries[0][0]) if cause.shared)
+    also = tuple(path for path in twins(loaded, entries[0][0]) if cause.shared)
     return [
         Change(cause, path, said.now, _down(said.now * factor, said.unit), said.unit, also, bool(cause.rests_on))
         for path, said in entries
@@ -318,7 +318,7 @@ def _changes(loaded: LoadedJob, cause: Cause, entries: list[tuple[str, Stated | 
     ]
 
 
-def _twins(loaded: LoadedJob, path: str) -> Iterator[str]:
+def twins(loaded: LoadedJob, path: str) -> Iterator[str]:
     """The other entries that speak of the same kept device with the same value, in the same plane."""
     mine = deviation(loaded, path)
     step = path.split(".")[-2]

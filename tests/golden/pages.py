@@ -10,12 +10,13 @@ from functools import cache
 from pathlib import Path
 
 from setupcheck.errors import JobError
-from setupcheck.flow import load_job, prepare, review, vary
+from setupcheck.flow import load_job, mend, prepare, review, vary
 from setupcheck.jobfile.changing import Change, changed
 from setupcheck.jobfile.ranging import read_range
 from setupcheck.jobfile.reading import read_job_text
 from setupcheck.report.index_table import as_index_table
 from setupcheck.report.pictures import pictures
+from setupcheck.report.remedy import as_text as remedy_as_text
 from setupcheck.report.text import as_text
 from setupcheck.report.vary import as_text as varied_as_text
 from setupcheck.report.vary_drawing import as_drawing
@@ -52,6 +53,8 @@ def reports() -> dict[str, str]:
     found["shimmed-jaws.txt"] = as_text(review(read_job_text(SHIMMED, "shimmed-jaws.yaml")))
     found["index-table.txt"] = index_table()
     found["vary.txt"] = varied()
+    found["remedy.txt"] = remedied("mistakes/hidden-chuck-run-out")
+    found["remedy-of-a-good-job.txt"] = remedied("coupling-hub")
     found["vary-range.txt"] = swept_as_text(swept())
     return found
 
@@ -99,6 +102,11 @@ def varied() -> str:
     """What if the finished hub had been trued to 9 um instead of 4."""
     changes = [Change("setups.50.hold.centre.runout.measured", "9 um")]
     return varied_as_text(vary(ROOT / "jobs" / "rotator-worm-wheel.yaml", changes))
+
+
+def remedied(job: str) -> str:
+    """What would bring a job inside, or what is good enough already."""
+    return remedy_as_text(*mend(ROOT / "jobs" / f"{job}.yaml"))
 
 
 @cache
