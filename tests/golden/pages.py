@@ -161,6 +161,8 @@ def excerpts() -> dict[str, str]:
     table = reports()["index-table.txt"].splitlines()
     what_if = reports()["vary.txt"].splitlines()
     range_of = reports()["vary-range.txt"].splitlines()
+    would_do = reports()["remedy.txt"].splitlines()
+    outside = first_of("OUTSIDE", would_do)
     moved = first_of("WHAT WAS ASKED", what_if)
     asked = good.index("WHAT WAS ASKED, at its worst")
     dial = next(i for i, line in enumerate(good) if line.startswith("  op 40, run-out on hub: up to"))
@@ -173,6 +175,7 @@ def excerpts() -> dict[str, str]:
         "index": "\n".join([*table[2:26], "  …", *table[-5:]]),
         "vary": "\n".join([*what_if[1:15], "  …", *what_if[moved - 1 : moved + 5], "  …"]),
         "vary-range": "\n".join([*range_of[1 : first_of("WHAT WAS ASKED", range_of) - 1], "  …"]),
+        "remedy": "\n".join([*would_do[1 : outside + 8], "  …"]),
         "slips": slips(),
         "mistakes": mistakes(),
     }
