@@ -31,7 +31,7 @@ TRIAL = 0.01
 """The reading that the route is walked with [mm]. Source: our choice; everything known goes straight through it."""
 LARGEST = 4.0
 """Readings up to so many times the larger of gate and plan are looked at. Source: our screening choice."""
-STEPS, ENOUGH = 30, 1e-7
+STEPS, ENOUGH = 60, 1e-12
 """Most steps of a search, and where it is close enough [mm, or the figure's unit]. Source: our choice."""
 WORTH = 1.02
 """A band that allows less than this beyond the gate is not told. Source: our screening choice."""

@@ -164,9 +164,9 @@ def gates(scopes: Sequence[Scope], results: Sequence[tuple[str, Result]]) -> lis
         same = kept_as(entry)
         if same and entry.given.high_at is None:
             if same in shared:
-                assert entry.op is not None
                 first = found[shared[same]]
-                found[shared[same]] = replace(first, also=(*first.also, entry.op), paths=(*first.paths, entry.path))
+                also = (*first.also, entry.op) if entry.op is not None else first.also
+                found[shared[same]] = replace(first, also=also, paths=(*first.paths, entry.path))
                 continue
             shared[same] = len(found)
         assert isinstance(scopes[0].node, Floor)
@@ -179,7 +179,8 @@ def kept_as(entry: DialEntry) -> str:
     given = entry.given
     if not (given.device and given.mark == "kept"):
         return ""
-    return kept_key(given, entry.key, second=entry.step == "and_centre")
+    what = {"square": "face_runout", "machine": "axis"}.get(entry.step, "runout")  # as the route names these causes
+    return kept_key(given, what, second=entry.step == "and_centre")
 
 
 @record(eq=False)

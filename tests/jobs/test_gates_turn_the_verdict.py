@@ -182,6 +182,14 @@ def test_a_device_that_only_names_its_typical_reading_has_a_gate_too() -> None:
     assert gate.reading == pytest.approx(reading(judged(WHEEL), "50/centre") + 1.5e-3)  # without the guard of a reading
 
 
+def test_a_kept_device_that_a_bought_part_names_too_has_one_gate_with_every_key() -> None:
+    kept = "{at_most: 3 um, device: chuck-A, mark: kept}"
+    found = after(("setups.40.hold.centre.runout", kept), ("parts.spindle.given[1].runout", kept))
+    gate = next(g for g in found.gates if g.key == "40/centre")
+    assert gate.keys == ("setups.40.hold.centre.runout.measured", "parts.spindle.given[1].runout.measured")
+    assert (gate.op, gate.also) == (40, ())
+
+
 def test_a_touched_diameter_keeps_its_requirements_within_its_range() -> None:
     gates = [g for g in lengths_of(judged(WHEEL), everything=True) if g.path.endswith(".depth_from")]
     for gate in gates:

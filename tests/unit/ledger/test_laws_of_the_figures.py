@@ -138,9 +138,9 @@ def test_a_high_point_is_as_high_as_the_vector_under_it_is_long() -> None:
 
 
 def numbers(tree: object, at: str = "") -> dict[str, float]:
-    """Every number of a report by its way; counts, lines and checksums left out."""
+    """Every number of a report by its way; counts, lines, checksums and the steps of a dial left out."""
     if isinstance(tree, dict):
-        keep = {k: v for k, v in tree.items() if k not in ("line", "lines", "sha256", "counts")}
+        keep = {k: v for k, v in tree.items() if k not in ("line", "lines", "sha256", "counts", "step")}
         return {way: v for k, node in keep.items() for way, v in numbers(node, f"{at}.{k}").items()}
     if isinstance(tree, list):
         return {way: v for i, node in enumerate(tree) for way, v in numbers(node, f"{at}.{i}").items()}
