@@ -158,7 +158,7 @@ def gap_of_insert(floor: Floor, cut: WheelCut, width: float) -> float:
 
     Raises: OutOfRange for sizes that give no insert.  Source: worm.insert.insert_widths turned round.
     """
-    height = cut.cutter.width_at if cut.cutter.width_at is not None else cut.pitch_height
+    height = cut.width_height
     tilt = tilt_of(floor, cut)
     gap = width
     for _ in range(40):
