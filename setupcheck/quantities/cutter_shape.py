@@ -195,7 +195,7 @@ def insert_gap(shape: Shape, insert: str, error: float | None, budget: float | N
 
 def width_needed(cut: WheelCut, floor: Floor) -> float:
     """Width of the insert at pitch height that just fits the thread as measured, no backlash [mm]. Source: worm.insert."""
-    return insert_width(cut, cut.drive.thread, height=cut.drawn_height, tilt=tilt_of(floor, cut))
+    return insert_width(cut.as_drawn(), cut.drive.thread, height=cut.drawn_height, tilt=tilt_of(floor, cut))
 
 
 def width_at_pitch(cut: WheelCut) -> float | None:

@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
+
 from setupcheck.jobfile.models import Cutter, Dimension
 from setupcheck.jobfile.names import Ref
 from setupcheck.jobfile.setups import Cut
@@ -120,6 +122,10 @@ class WheelCut:
     def pitch_height(self) -> float:
         """Height of the rolling circle above the cutter's tip, in the mid-plane [mm]."""
         return self.drive.wheel_diameter / 2.0 - self.root
+
+    def as_drawn(self) -> WheelCut:
+        """The cut under the touched surface as drawn, whatever was measured of it."""
+        return replace(self, root=self.drawn_root, clearance=self.clearance + self.root - self.drawn_root)
 
     @property
     def drawn_height(self) -> float:
