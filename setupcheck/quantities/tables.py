@@ -15,12 +15,14 @@ from setupcheck.quantities.contact_setting import CONTACT_SETTING
 from setupcheck.quantities.cutter_shape import SHAPE
 from setupcheck.quantities.cutting import CUTTING
 from setupcheck.quantities.division import DIVIDE
+from setupcheck.quantities.eccentric import ECCENTRIC
 from setupcheck.quantities.exact_gap import EXACT
 from setupcheck.quantities.growing import GROWING
 from setupcheck.quantities.head_setting import HEAD
 from setupcheck.quantities.heat_checks import HEAT_CHECKS
 from setupcheck.quantities.index_table import INDEX_TABLE
 from setupcheck.quantities.insert_measured import MEASURED
+from setupcheck.quantities.insert_shown import SHOWN
 from setupcheck.quantities.inserts import INSERTS
 from setupcheck.quantities.joining import JOINING
 from setupcheck.quantities.joint_heat import HEAT
@@ -296,8 +298,10 @@ TABLES: tuple[Quantity, ...] = (
     *CONTACT_SETTING,
     *CONTACT_ADVICE,
     *INSERTS,
+    *SHOWN,
     *MEASURED,
     *MESHING,
+    *ECCENTRIC,
     *MARK,
     *WORM,
     *THREAD,
