@@ -304,7 +304,14 @@ def test_a_promise_is_found(text: str) -> None:
 
 def test_the_closing_line_names_what_the_program_cannot_know() -> None:
     line = shipped().closing_line
-    for words in ("Planning aid only", "figures given", "cannot see your shop", "manuals", "local law", "qualified person"):
+    for words in (
+        "Planning aid only",
+        "figures given",
+        "cannot see your shop",
+        "manuals",
+        "local law",
+        "qualified person",
+    ):
         assert words in line
 
 
