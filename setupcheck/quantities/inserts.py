@@ -184,7 +184,9 @@ def ground(asked: str, cut: WheelCut) -> Grinding | None:
     A form error alone plans no grinding, nor does how it is looked at: a measured insert is held against it.
     """
     told = cut.cutter.grinding
-    return None if told is None or told.model_fields_set <= LOOKED_AT_ONLY else told
+    if told is None or (told.model_fields_set and told.model_fields_set <= LOOKED_AT_ONLY):
+        return None
+    return told
 
 
 def form_error(asked: str, cut: WheelCut) -> float | Open | None:

@@ -243,9 +243,9 @@ def gap_advice(floor: Floor, join: Join, gap: float, op: int) -> str:
     """What keeps the hub at its shoulder, with the entry to write. Source: joining.gap_after_cooling."""
     end = join.stop.against if join.stop is not None and join.stop.against is not None else "the shoulder"
     return (
-        f"Cool the hub's end at {end} first, with air and never with water, held against it and followed up by a nut or clamp until "
-        f"it bites; then write grips_first: shoulder-end (setups.{op}.join). Or face what counts after the joint, and require the "
-        f"length or the mid-plane that the {floor.size(gap)} would move."
+        f"Cool the hub's end at {end} first, with air and never with water, held against it and followed up by a nut or clamp "
+        f"until it bites; then write grips_first: shoulder-end (setups.{op}.join). Or face what counts after the joint, and "
+        f"require the length or the mid-plane that the {floor.size(gap)} would move."
     )
 
 

@@ -20,6 +20,7 @@ from setupcheck.quantities.exact_gap import EXACT
 from setupcheck.quantities.growing import GROWING
 from setupcheck.quantities.head_setting import HEAD
 from setupcheck.quantities.heat_checks import HEAT_CHECKS
+from setupcheck.quantities.hobs import HOBS
 from setupcheck.quantities.index_table import INDEX_TABLE
 from setupcheck.quantities.insert_measured import MEASURED
 from setupcheck.quantities.insert_shown import SHOWN
@@ -293,6 +294,7 @@ TABLES: tuple[Quantity, ...] = (
     *THROUGH,
     *CUTTING,
     *SHAPE,
+    *HOBS,
     *EXACT,
     *CONTACT,
     *CONTACT_SETTING,

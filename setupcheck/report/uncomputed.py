@@ -166,7 +166,11 @@ def _of_the_wheel(loaded: LoadedJob) -> Iterator[str]:
         for name, cut in setup.cut.items():
             ref = loaded.ref(name, setup.part)
             kind = job.cutters[cut.cutter].kind if cut.cutter is not None else ""
-            if (ref.part, ref.surface) != (wheel.part, wheel.surface) or kind != "single-point":
+            if (ref.part, ref.surface) != (wheel.part, wheel.surface):
+                continue
+            if kind == "hob":
+                yield f"cutters.{cut.cutter}.diameter"
+            if kind != "single-point":
                 continue
             path = f"setups.{setup.op}.cut.{name}"
             yield from (f"{path}.depth", f"{path}.depth_from", "worm.profile", "worm.thread_thickness", "mesh.mark")
