@@ -28,6 +28,7 @@ from setupcheck.quantities.inserts import INSERTS
 from setupcheck.quantities.joining import JOINING
 from setupcheck.quantities.joint_heat import HEAT
 from setupcheck.quantities.joint_states import IN_STATES
+from setupcheck.quantities.keyways import KEYWAYS
 from setupcheck.quantities.marking import MARK
 from setupcheck.quantities.measuring import MEASURE
 from setupcheck.quantities.meshing import MESHING
@@ -281,6 +282,7 @@ TABLES: tuple[Quantity, ...] = (
     *TILT,
     *HEAD,
     *JOINING,
+    *KEYWAYS,
     *STRENGTH,
     *IN_STATES,
     *GROWING,

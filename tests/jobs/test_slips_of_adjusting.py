@@ -235,3 +235,35 @@ def test_five_per_cent_more_hob_is_eleven_minutes_and_a_half_less_lead() -> None
     by_hand = math.asin(2.0 * math.cos(math.atan(1.0 / 18.0)) / (36.0 * 1.05))
     assert angle == pytest.approx(by_hand, abs=1e-12)
     assert hobs.LARGEST_OVERSIZE == 0.06
+
+
+KEYED = {
+    COUPLING: (
+        (r"      bore:     \{kind: bore", "      key: {kind: slot, on_circle: 84, at: 30, width: 22, made: stock}\n      bore:     {kind: bore"),
+        (r"      seat:     \{kind", "      key: {kind: slot, on_circle: 76, at: 30, width: 22, made: stock}\n      seat:     {kind"),
+    ),
+    ROTATOR: (
+        (r"      bore:     \{kind", "      key: {kind: slot, on_circle: 34, at: 13, width: 8, made: stock}\n      bore:     {kind"),
+        (r"      journal:  \{kind", "      key: {kind: slot, on_circle: 30, at: 13, width: 8, made: stock}\n      journal:  {kind"),
+    ),
+}  # fmt: skip
+
+
+@pytest.mark.parametrize("route", KEYED)
+def test_two_keyways_that_nobody_brings_together_are_told(route: str) -> None:
+    ((verdict, message, remedy),) = told("FIT-016", route, *KEYED[route])
+    assert verdict == "warn" and "both have a keyway" in message and "mounted_at" in remedy
+    angle = (r"      grips_first: shoulder-end", "      mounted_at: 0 deg\n      grips_first: shoulder-end")
+    assert not told("FIT-016", route, *KEYED[route], angle)
+
+
+@pytest.mark.parametrize("route", KEYED)
+@pytest.mark.parametrize("part", [0, 1])
+def test_one_keyway_alone_meets_nothing(route: str, part: int) -> None:
+    assert not told("FIT-016", route, KEYED[route][part])
+
+
+def test_a_slot_far_from_the_seat_is_no_keyway_of_it() -> None:
+    hub, shaft = KEYED[COUPLING]
+    assert not told("FIT-016", COUPLING, (hub[0], hub[1].replace("on_circle: 84", "on_circle: 140")), shaft)
+    assert not told("FIT-016", COUPLING, hub, (shaft[0], shaft[1].replace("at: 30", "at: 90")))

@@ -224,6 +224,7 @@ QUANTITIES: Mapping[str, FakeQuantity] = {
         FakeQuantity("heat.carry_advice", "join", "", 0),
         FakeQuantity("heat.gauge", "join", "mm", 3),
         FakeQuantity("heat.go_gauge", "join", "mm", 3),
+        FakeQuantity("fit.keyways", "join", "", 0),
         FakeQuantity("heat.gap_uncounted", "join", "um", 1),
         FakeQuantity("heat.gap_advice", "join", "", 0),
         FakeQuantity("heat.gauge_enters", "join", "mm", 3),
