@@ -29,7 +29,7 @@ LARGEST_MAGNIFICATION = 500.0  # projectors end at 100, microscopes of the works
 def _magnification(given: object, info: ValidationInfo) -> float:
     text = str(scalar(given)).strip().removesuffix(":1").removesuffix("x")
     value = notation.number(text)
-    if not 1.0 <= value <= LARGEST_MAGNIFICATION:
+    if not 0.0 < value <= LARGEST_MAGNIFICATION:
         raise ValueError(
             f"{notation.quoted(given)} is no magnification. Write how many times larger the insert is shown, as in 20"
         )
@@ -37,7 +37,7 @@ def _magnification(given: object, info: ValidationInfo) -> float:
 
 
 Magnification = Annotated[float, Read(_magnification)]
-"""How many times larger something is shown, 1 and above."""
+"""How many times larger something is shown, above zero; below 1 it is shown smaller."""
 
 
 class Grinding(Shop):

@@ -30,8 +30,8 @@ AT = "cutters.fly.grinding"
         ("{wheel_radius: -5 mm}", f"{AT}.wheel_radius | '-5 mm' is not a size. Write a length above zero"),
         ("{way: turned}", f"{AT}.way | 'turned' is not known here. Did you mean turned-over?"),
         (
-            "{magnification: 0.5}",
-            f"{AT}.magnification | 0.5 is no magnification. Write how many times larger the insert is shown, as in 20",
+            "{magnification: 2000}",
+            f"{AT}.magnification | 2000 is no magnification. Write how many times larger the insert is shown, as in 20",
         ),
         ("{magnification: 20 mm}", f"{AT}.magnification | '20 mm' is a length, not a number. Write a number, as in 72"),
         ("{wheel: 5 mm}", f"{AT}.wheel | 'wheel' is not a key of this entry. Did you mean wheel_radius?"),
