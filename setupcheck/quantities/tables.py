@@ -15,16 +15,20 @@ from setupcheck.quantities.contact_setting import CONTACT_SETTING
 from setupcheck.quantities.cutter_shape import SHAPE
 from setupcheck.quantities.cutting import CUTTING
 from setupcheck.quantities.division import DIVIDE
+from setupcheck.quantities.eccentric import ECCENTRIC
 from setupcheck.quantities.exact_gap import EXACT
 from setupcheck.quantities.growing import GROWING
 from setupcheck.quantities.head_setting import HEAD
 from setupcheck.quantities.heat_checks import HEAT_CHECKS
+from setupcheck.quantities.hobs import HOBS
 from setupcheck.quantities.index_table import INDEX_TABLE
 from setupcheck.quantities.insert_measured import MEASURED
+from setupcheck.quantities.insert_shown import SHOWN
 from setupcheck.quantities.inserts import INSERTS
 from setupcheck.quantities.joining import JOINING
 from setupcheck.quantities.joint_heat import HEAT
 from setupcheck.quantities.joint_states import IN_STATES
+from setupcheck.quantities.keyways import KEYWAYS
 from setupcheck.quantities.marking import MARK
 from setupcheck.quantities.measuring import MEASURE
 from setupcheck.quantities.meshing import MESHING
@@ -278,6 +282,7 @@ TABLES: tuple[Quantity, ...] = (
     *TILT,
     *HEAD,
     *JOINING,
+    *KEYWAYS,
     *STRENGTH,
     *IN_STATES,
     *GROWING,
@@ -291,13 +296,16 @@ TABLES: tuple[Quantity, ...] = (
     *THROUGH,
     *CUTTING,
     *SHAPE,
+    *HOBS,
     *EXACT,
     *CONTACT,
     *CONTACT_SETTING,
     *CONTACT_ADVICE,
     *INSERTS,
+    *SHOWN,
     *MEASURED,
     *MESHING,
+    *ECCENTRIC,
     *MARK,
     *WORM,
     *THREAD,
