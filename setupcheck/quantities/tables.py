@@ -41,6 +41,7 @@ from setupcheck.quantities.thread import THREAD
 from setupcheck.quantities.through import THROUGH
 from setupcheck.quantities.tilting import TILT
 from setupcheck.quantities.ways import WAYS
+from setupcheck.quantities.truing import TRUING
 from setupcheck.quantities.wheel_over_balls import OVER_BALLS
 from setupcheck.quantities.wheel_sizes import WHEEL
 from setupcheck.quantities.worm_sizes import WORM
@@ -312,4 +313,5 @@ TABLES: tuple[Quantity, ...] = (
     *PROGRESS,
     *PROVE,
     *OPPOSITE,
+    *TRUING,
 )
