@@ -5,6 +5,7 @@ from __future__ import annotations
 from setupcheck.quantities import holds, judged
 from setupcheck.quantities.advice import ADVICE
 from setupcheck.quantities.backlash_compared import AS_READ
+from setupcheck.quantities.beside import BESIDE
 from setupcheck.quantities.book import Quantity
 from setupcheck.quantities.chilling import CHILLING
 from setupcheck.quantities.choosing import CHOOSING
@@ -290,6 +291,7 @@ TABLES: tuple[Quantity, ...] = (
     *OPENING,
     *HEAT_CHECKS,
     *THROUGH,
+    *BESIDE,
     *CUTTING,
     *SHAPE,
     *EXACT,
