@@ -38,7 +38,11 @@ _BETWEEN_GAPS = (
 _ONE = {"teeth": "tooth", "holes": "hole", "slot": "slot", "lines": "line"}
 
 _DATUMS = {
-    "centre": ("cylinder, bore, taper, thread, centre, throat, teeth, holes, lines", "centred on", "a cylinder or a bore"),
+    "centre": (
+        "cylinder, bore, taper, thread, centre, throat, teeth, holes, lines",
+        "centred on",
+        "a cylinder or a bore",
+    ),
     "square": ("face", "squared on", "a face"),
     "stop": ("face, centre", "stopped on", "a face"),
     "clock": ("teeth, holes, slot, lines", "clocked on", "a slot, a hole pattern or a toothing"),

@@ -27,8 +27,8 @@ from setupcheck.quantities.causes import (
 from setupcheck.quantities.dividing import divided, table_turn
 from setupcheck.quantities.holding import Held, held_placing
 from setupcheck.quantities.joining import gap_after_cooling
-from setupcheck.quantities.truing import not_stopped, offset_of_a_trued_part
 from setupcheck.quantities.shop import Body, Floor, outline, tooth_pattern, unknown_surface
+from setupcheck.quantities.truing import not_stopped, offset_of_a_trued_part
 
 
 def walk(loaded: LoadedJob) -> Floor:

@@ -129,7 +129,9 @@ def _seen_by_heads(floor: Floor, stack: Stack, *, flank: bool) -> float | Open:
 
     heads, off, path = stack.require.heads or 1, stack.require.heads_off, f"require[{stack.index + 1}]"
     if heads > 1 and flank:
-        raise floor.problem(f"{path}.heads", "heads read lines or holes, no teeth", "Drop heads, or ask it of the lines")
+        raise floor.problem(
+            f"{path}.heads", "heads read lines or holes, no teeth", "Drop heads, or ask it of the lines"
+        )
     if heads > 1 and off is None:
         return Open((f"{path}.heads_off",))
     return share_left(heads, off or 0.0)

@@ -41,8 +41,8 @@ from setupcheck.quantities.then_now import THEN_NOW
 from setupcheck.quantities.thread import THREAD
 from setupcheck.quantities.through import THROUGH
 from setupcheck.quantities.tilting import TILT
-from setupcheck.quantities.ways import WAYS
 from setupcheck.quantities.truing import TRUING
+from setupcheck.quantities.ways import WAYS
 from setupcheck.quantities.wheel_over_balls import OVER_BALLS
 from setupcheck.quantities.wheel_sizes import WHEEL
 from setupcheck.quantities.worm_sizes import WORM

@@ -220,5 +220,5 @@ class Words:
         if heat.gauge is not None:
             yield Said("Gauge", f"{self.show.length(heat.gauge)}, tried in the hot bore")
         if heat.near is not None:
-            stands = f" stands {heat.near.stands:g} degC" if heat.near.stands is not None else " stays in place"
-            yield Said("Beside it", f"{paper(heat.near.what, 40)}{stands}")
+            stands = f", {heat.near.stands:g} degC at most" if heat.near.stands is not None else ""
+            yield Said("Beside it", f"{paper(heat.near.what, 40)} in place{stands}")
