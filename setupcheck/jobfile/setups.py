@@ -20,7 +20,7 @@ from setupcheck.jobfile.models import (
 )
 from setupcheck.jobfile.prove_out import ProveOut
 from setupcheck.jobfile.service import JointService
-from setupcheck.jobfile.truing import Trued
+from setupcheck.jobfile.truing import Trued, check_it_is_loose
 from setupcheck.jobfile.types import (
     Angle,
     AngleBound,
@@ -371,10 +371,8 @@ class Join(Shop):
 
     @model_validator(mode="after")
     def only_a_loose_part_is_trued(self) -> Self:
-        if self.trued is not None and self.by not in ("slide", "screw", "bond"):
-            raise ValueError(f"by {self.by} the joint centres the part itself. Drop trued, or write by: bond or screw")
-        if self.trued is not None and self.square != "shoulder":
-            raise ValueError("a part is trued by moving it across its shoulder. Write square: shoulder, or drop trued")
+        if self.trued is not None:
+            check_it_is_loose(self.by, self.square)
         return self
 
 

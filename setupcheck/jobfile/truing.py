@@ -20,3 +20,14 @@ class Trued(Shop):
     def by(self) -> str:
         """What reads it, as at a hold."""
         return "indicator"
+
+
+def check_it_is_loose(by: str, square: str | None) -> None:
+    """A joint that is trued lets its part be moved across the shoulder.
+
+    Raises: ValueError for one that centres the part itself, or does not square it on the shoulder.
+    """
+    if by not in ("slide", "screw", "bond"):
+        raise ValueError(f"by {by} the joint centres the part itself. Drop trued, or write by: bond or screw")
+    if square != "shoulder":
+        raise ValueError("a part is trued by moving it across its shoulder. Write square: shoulder, or drop trued")

@@ -1,4 +1,4 @@
-"""A joint whose outer part is trued by a dial before it is fast: where that leaves it, and whether its play gives room. mm, rad."""
+"""A joint whose outer part is trued by a dial before it is fast: where that leaves it; has its play room for it? mm, rad."""
 
 from __future__ import annotations
 

@@ -70,7 +70,7 @@ LIMIT_WIDTH, DRAW = 0.7, 0.18
 class Planned:
     """A ring as planned; arcs on its circle [mm].
 
-    kind    gap, hole or line, for its numbers;  worst  range of the worst case, None where open;  limit  of that range, None without
+    kind    gap, hole or line;  worst  range of the worst case, None where open;  limit  of that range, None without
     low, high  of each place what SHARE of the draws stay within;  one  a draw whose range is the likely one, and that range
     missing what to fill;  gaps  what the gaps add within their pitch, which the worst case counts [mm]
     """

@@ -19,6 +19,7 @@ from setupcheck.jobfile import (
     properties,
     prove_out,
     setups,
+    truing,
     worm,
 )
 from setupcheck.report.json import as_json
@@ -97,6 +98,7 @@ RECORDS = {
         properties,
         prove_out,
         setups,
+        truing,
         heating,
         worm,
         marks,
