@@ -116,14 +116,18 @@ def _related(
 
 
 def _divided(pattern: Pattern | None, relation: Relation, path: str, label: str) -> Pattern | None:
-    """The places of a bought part with what each may be out for itself: uniform within the stated bound, either way.
+    """The places of a bought part with what each may be out for itself: uniform within the stated bound; open where none is.
 
     Nothing is known of their order, so neighbours may stand at both ends of it.  Source: the job file.
     """
-    if pattern is None or relation.division is None:
+    if pattern is None or pattern.count < 2 or relation.runout is None:
         return pattern
-    cause = Cause(f"{label}: its division", "length", high=relation.division, paths=(f"{path}.division",))
-    return replace(pattern, scatter=(*pattern.scatter, Scatter(cause, "angle", relation.division)))
+    name, where = f"{label}: its division", f"{path}.division"
+    bound = relation.division
+    cause = Cause(name, "undetermined", missing=where)
+    if bound is not None:
+        cause = Cause(name, "length", high=bound, paths=(where,))
+    return replace(pattern, scatter=(*pattern.scatter, Scatter(cause, "angle", bound or 0.0)))
 
 
 def _ends(relation: Relation, path: str, shape: Outline, label: str) -> tuple[Account, Account]:
