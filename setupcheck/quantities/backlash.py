@@ -342,7 +342,7 @@ def growth(floor: Floor, join: Join, op: int) -> Span | Open:
     opened = [x for x in (joint, served, lost) if isinstance(x, Open)]
     if opened:
         return all_missing(*opened)
-    if not isinstance(joint, pairing.Pair) or not isinstance(lost, float) or isinstance(served, Open):
+    if not isinstance(joint, pairing.Pair) or not isinstance(lost, float) or served is None or isinstance(served, Open):
         return Span(0.0, 0.0)
     try:
         most = growing.growth_most(joint, strength.grip_most(joint, interference_most(limits), served))

@@ -5,6 +5,7 @@ from __future__ import annotations
 from setupcheck.quantities import holds, judged
 from setupcheck.quantities.advice import ADVICE
 from setupcheck.quantities.backlash_compared import AS_READ
+from setupcheck.quantities.beside import BESIDE
 from setupcheck.quantities.book import Quantity
 from setupcheck.quantities.chilling import CHILLING
 from setupcheck.quantities.choosing import CHOOSING
@@ -44,6 +45,7 @@ from setupcheck.quantities.then_now import THEN_NOW
 from setupcheck.quantities.thread import THREAD
 from setupcheck.quantities.through import THROUGH
 from setupcheck.quantities.tilting import TILT
+from setupcheck.quantities.truing import TRUING
 from setupcheck.quantities.ways import WAYS
 from setupcheck.quantities.wheel_over_balls import OVER_BALLS
 from setupcheck.quantities.wheel_sizes import WHEEL
@@ -294,6 +296,7 @@ TABLES: tuple[Quantity, ...] = (
     *OPENING,
     *HEAT_CHECKS,
     *THROUGH,
+    *BESIDE,
     *CUTTING,
     *SHAPE,
     *HOBS,
@@ -320,4 +323,5 @@ TABLES: tuple[Quantity, ...] = (
     *PROGRESS,
     *PROVE,
     *OPPOSITE,
+    *TRUING,
 )

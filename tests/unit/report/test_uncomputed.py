@@ -19,6 +19,7 @@ from setupcheck.jobfile import (
     properties,
     prove_out,
     setups,
+    truing,
     worm,
 )
 from setupcheck.report.json import as_json
@@ -34,7 +35,7 @@ READ = {
     "Throat": "kind diameter at made",
     "Toothing": "kind count on_circle at width pressure_angle module made",
     "Pattern": "kind count on_circle at diameter width angle made",
-    "Relation": "of about from_ runout face_runout across length",
+    "Relation": "of about from_ runout face_runout across length division",
     "Part": "material surfaces given",
     "Properties": "modulus poisson expansion yield_strength tensile_strength brittle density specific_heat "
     "conductivity heat_cap last_temper porous",
@@ -52,7 +53,7 @@ READ = {
     "Machine": "kind worm_ratio axis_runout hole_circles",
     "Distance": "from_ length",
     "Place": "axis worm_axis",
-    "Require": "what of about at_most at_least between grade across at on_diameter clock name",
+    "Require": "what of about at_most at_least between grade across at on_diameter clock heads heads_off name",
     "Waive": "rule at reason until",
     "Checked": "caution op by note",
     "Through": "by runout",
@@ -75,8 +76,10 @@ READ = {
     "spindle_to_axis tool_change_after prove_out",
     "BacklashRead": "along readings uncertainty end_float",
     "ProveOut": "depth ball about readings uncertainty",
-    "Heat": "hub shaft by oven_error read_by carry cold_by cold_error gauge flash_point room_volume coolant",
-    "Join": "outer inner by square fit_error clearance rests stop mounted_at",
+    "Heat": "hub shaft by oven_error read_by carry cold_by cold_error gauge flash_point room_volume coolant near",
+    "Near": "what stands away",
+    "Trued": "on about runout",
+    "Join": "outer inner by square fit_error trued clearance rests stop mounted_at",
     "Setup": "op note machine part looks_at_tool keeps hold head divide cut join",
     "Job": "setupcheck title job revision units room confidence parts worm mesh cutters machines setups place require "
     "waive checked done",
@@ -95,6 +98,7 @@ RECORDS = {
         properties,
         prove_out,
         setups,
+        truing,
         heating,
         worm,
         marks,
