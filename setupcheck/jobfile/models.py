@@ -230,6 +230,7 @@ class Toothing(Shop):
     kind   what it is;  made  `stock`: the blank brings it;  count  of the teeth
     at     where the mid-plane stands along the part [mm];  width  of the face, half on either side [mm]
     on_circle  diameter of the pitch circle [mm];  module  [mm];  pressure_angle  of the flanks [rad]
+    cone   of a bevel: angle of its root cone to the axis [rad], `width` then lies along the cone
     """
 
     kind: Literal["teeth"]
@@ -239,6 +240,7 @@ class Toothing(Shop):
     width: Size | None = None
     pressure_angle: Angle | None = None
     module: Size | None = None
+    cone: Angle | None = None
     made: Literal["stock"] | None = None
 
 

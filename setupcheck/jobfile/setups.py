@@ -20,6 +20,7 @@ from setupcheck.jobfile.models import (
 )
 from setupcheck.jobfile.prove_out import ProveOut
 from setupcheck.jobfile.service import JointService
+from setupcheck.jobfile.travel import Travel
 from setupcheck.jobfile.types import (
     Angle,
     AngleBound,
@@ -292,6 +293,7 @@ class Cut(Shop):
     finishing_cut      thinnest cut that the tool still takes, on the radius [mm]
     form               error of the old surface's form, on the radius [mm]
     each               what each hole or tooth adds for itself
+    off_centre         how far the middle of the cutter may stand beside the axis that gaps are indexed about, ± [mm]
     cutter             one of `cutters`;  tool_change_after  so many gaps of all passes
     depth              of a gap [mm];  depth_error  of it [mm];  depth_from  the surface it is counted from
     passes             depths that are cut one after the other, together the whole depth [mm]
@@ -314,6 +316,7 @@ class Cut(Shop):
     passes: tuple[Size, ...] = ()
     prove_out: ProveOut | None = None
     each: Scatter | None = None
+    off_centre: Bound | None = None
     spindle_to_axis: dict[Literal["x", "y"], Dim] | None = None
     tool_change_after: Whole | None = Field(default=None, ge=1)
 
@@ -373,7 +376,8 @@ class Setup(Shop):
     op     its number;  note  for people;  machine  one of `machines`, or its kind;  part  that is held
     looks_at_tool  the end of the part that faces the tool
     hold   how the part is held;  keeps  instead, the operation whose holding was never opened
-    head   its tilt;  divide  how the circle is divided;  cut  each surface that is cut, by its name
+    head   its tilt;  travel  how the work's axis lies to it
+    divide  how the circle is divided;  cut  each surface that is cut, by its name
     join   two parts put together
     """
 
@@ -385,6 +389,7 @@ class Setup(Shop):
     keeps: Whole | None = None
     hold: Hold | None = None
     head: Head | None = None
+    travel: Travel | None = None
     divide: Divide | None = None
     cut: dict[str, Cut] = Field(default_factory=dict)
     join: Join | None = None

@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+import math
+
 from dataclasses import field, replace
 
 from setupcheck.errors import JobError, Problem
@@ -126,7 +128,9 @@ def outline(surface: Surface) -> Outline:
         return Outline(surface.kind, surface.at, surface.at, surface.diameter, surface.facing)
     if isinstance(surface, Throat):
         return Outline("throat", surface.at, surface.at, surface.diameter, 0)
-    half = (surface.width or 0.0) / 2.0 if isinstance(surface, Toothing) else 0.0  # a slot's width lies round the part
+    half = 0.0  # a slot's width lies round the part
+    if isinstance(surface, Toothing):
+        half = (surface.width or 0.0) / 2.0 * math.cos(surface.cone or 0.0)
     return Outline(surface.kind, surface.at - half, surface.at + half, surface.on_circle, 0)
 
 
