@@ -42,7 +42,7 @@ def _open(*accounts: Account) -> tuple[str, ...]:
 class GapSymmetry:
     """Twice the farthest that a gap's middle plane stands beside the axis, at either end [mm]: the zone of ISO 1101.
 
-    offsets       of the ring's axis from the reference at its low and its high end;  half  its length [mm]
+    offsets       of the ring's axis from the reference at its low and its high end;  half  of its length along the gap [mm]
     aside         of every gap's middle from the axis it was indexed about;  off_sideways  run-off of every gap [rad]
     """
 

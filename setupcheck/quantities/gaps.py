@@ -101,7 +101,9 @@ def figure(floor: Floor, stack: Stack) -> Built | Open:
         return found
     g, r = found
     if g.pattern is None or g.kind == "holes":
-        raise floor.problem(key, f"{g.ref} has no gaps, which {what} is asked of", "Write the name of teeth or of a slot")
+        raise floor.problem(
+            key, f"{g.ref} has no gaps, which {what} is asked of", "Write the name of teeth or of a slot"
+        )
     node = floor.loaded.job.parts[g.part].surfaces[g.name]
     cone = (node.cone or 0.0) if isinstance(node, Toothing) else 0.0
     lean = g.lean - r.lean
@@ -113,7 +115,7 @@ def figure(floor: Floor, stack: Stack) -> Built | Open:
         offsets = tuple(g.axis_at(z) - r.axis_at(z) for z in ends)
         # a slot has no length of its own, so what runs off along it cannot count
         runs = g.pattern.off_sideways if len(ends) == 2 else Account()
-        half = (g.high - g.low) / 2.0
+        half = node.width / 2.0 if isinstance(node, Toothing) and node.width is not None else 0.0
         return Built(gaps.GapSymmetry(offsets, half, g.pattern.aside, runs, g.pattern), left_out)
     if not isinstance(node, Toothing) or node.width is None:
         raise floor.problem(

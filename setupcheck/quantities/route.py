@@ -147,9 +147,7 @@ def _cut(floor: Floor, held: Held, placing: Placing, name: str, cut: Cut) -> Non
         if node.kind in ("teeth", "slot"):
             at_table = turn * fresh.radius if on_table or cut.spindle_to_axis else None
             lies = askew(setup, cut, name, node, radius=fresh.radius, table_y=at_table)
-            pattern = replace(
-                pattern, aside=lies.aside, off_sideways=lies.off_sideways, off_deep=lies.off_deep
-            )
+            pattern = replace(pattern, aside=lies.aside, off_sideways=lies.off_sideways, off_deep=lies.off_deep)
             turn += lies.clock
         target = replace(target, pattern=pattern)
     state = route.cut(

@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 import math
-
 from dataclasses import field, replace
 
 from setupcheck.errors import JobError, Problem

@@ -19,6 +19,7 @@ from setupcheck.jobfile import (
     properties,
     prove_out,
     setups,
+    travel,
     worm,
 )
 from setupcheck.report.json import as_json
@@ -32,7 +33,8 @@ READ = {
     "Round": "kind diameter low high hole made",
     "Flat": "kind at facing diameter hole made",
     "Throat": "kind diameter at made",
-    "Toothing": "kind count on_circle at width pressure_angle module made",
+    "Toothing": "kind count on_circle at width pressure_angle module cone made",
+    "Travel": "beside nearer over",
     "Pattern": "kind count on_circle at diameter width angle made",
     "Relation": "of about from_ runout face_runout across length",
     "Part": "material surfaces given",
@@ -98,6 +100,7 @@ RECORDS = {
         heating,
         worm,
         marks,
+        travel,
     )
     for record in vars(module).values()
     if inspect.isclass(record)
