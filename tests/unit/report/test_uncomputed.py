@@ -157,7 +157,10 @@ def test_a_tilt_that_is_compared_with_the_worm_is_not_told_and_any_other_is() ->
     assert not any(line.startswith("op 40") for line in told(WHEEL))
     hobbed = changed(WHEEL, ("fly: {kind: single-point", "fly: {kind: hob"))
     said = " ".join(told(hobbed))
-    assert "tilt 3deg 34' 35\" (compared with the worm only where its wheel is cut gap by gap)" in said
+    assert (
+        "tilt 3deg 34' 35\" (compared with a worm whose wheel is cut gap by gap, or with the root cone of bevel teeth)"
+        in said
+    )
     assert "depth 3.3 mm of teeth (held against the passes only)" in said
 
 
