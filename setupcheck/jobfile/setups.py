@@ -293,7 +293,7 @@ class Cut(Shop):
     finishing_cut      thinnest cut that the tool still takes, on the radius [mm]
     form               error of the old surface's form, on the radius [mm]
     each               what each hole or tooth adds for itself
-    off_centre         how far the middle of the cutter may stand beside the axis that gaps are indexed about, ± [mm]
+    off_centre         how far the middle of the cutter stands beside the axis that gaps are indexed about
     cutter             one of `cutters`;  tool_change_after  so many gaps of all passes
     depth              of a gap [mm];  depth_error  of it [mm];  depth_from  the surface it is counted from
     passes             depths that are cut one after the other, together the whole depth [mm]
@@ -316,7 +316,7 @@ class Cut(Shop):
     passes: tuple[Size, ...] = ()
     prove_out: ProveOut | None = None
     each: Scatter | None = None
-    off_centre: Bound | None = None
+    off_centre: Error | None = None
     spindle_to_axis: dict[Literal["x", "y"], Dim] | None = None
     tool_change_after: Whole | None = Field(default=None, ge=1)
 

@@ -5,19 +5,20 @@ from typing import Self
 
 from pydantic import model_validator
 
-from setupcheck.jobfile.types import Bound, Shop, Size
+from setupcheck.jobfile.models import Error
+from setupcheck.jobfile.types import Shop, Size
 
 
 class Travel(Shop):
     """How the axis of the work lies to the travel of the cutter, read along a bar; between centres that is the tail centre.
 
-    beside  how far it runs sideways out of the plane in which the cutter's middle travels, either way [mm]
-    nearer  how far it comes nearer to the cutter or goes from it, either way [mm]
+    beside  how far it runs sideways out of the plane in which the cutter's middle travels
+    nearer  how far it comes nearer to the cutter or goes from it
     over    length along the axis that both are read over [mm]
     """
 
-    beside: Bound | None = None
-    nearer: Bound | None = None
+    beside: Error | None = None
+    nearer: Error | None = None
     over: Size
 
     @model_validator(mode="after")

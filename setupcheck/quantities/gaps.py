@@ -8,6 +8,7 @@ from setupcheck.ledger import gaps
 from setupcheck.ledger.account import Account, real
 from setupcheck.ledger.causes import Cause
 from setupcheck.quantities.book import Open
+from setupcheck.quantities.causes import Entry, length_error
 from setupcheck.quantities.relations import Built, pair, second_order
 from setupcheck.quantities.requirements import Stack
 from setupcheck.quantities.shop import Floor
@@ -39,17 +40,13 @@ def askew(setup: Setup, cut: Cut, name: str, node: object, *, radius: float, tab
     clock = Account()
     if cut.off_centre is not None:
         words = f"op {op}, {name}: cutter beside the axis"
-        aside = _either_way(words, op, cut.off_centre, path)
+        aside = length_error(cut.off_centre, Entry(words, op, path, "")).along(1)
         clock = aside * (1.0 / radius)
     elif table_y is not None:
         aside = table_y
     else:
         aside = _unknown(f"op {op}, {name}: where the cutter stands", op, path)
     return Askew(aside, _travel(setup, name, "beside"), _deep(setup, name, node), clock)
-
-
-def _either_way(words: str, op: int, bound: float, *paths: str) -> Account:
-    return Account.of(Cause(words, "length", op, high=bound, paths=paths)).along(1)
 
 
 def _unknown(words: str, op: int, missing: str) -> Account:
@@ -65,7 +62,7 @@ def _travel(setup: Setup, name: str, key: str) -> Account:
     stated = getattr(travel, key) if travel is not None else None
     if travel is None or stated is None:
         return _unknown(words, op, path)
-    return _either_way(words, op, stated / travel.over, path)
+    return length_error(stated, Entry(words, op, path, "")).along(1) * (1.0 / travel.over)
 
 
 def _deep(setup: Setup, name: str, node: object) -> Account:

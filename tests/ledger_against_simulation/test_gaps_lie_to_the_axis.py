@@ -102,8 +102,8 @@ def predicted(case: Case, what: str) -> float:
     """The figure of the package with every error at its exact value."""
     truth = Truth()
     truth.values["setups.10.cut.teeth.off_centre", ""] = complex(case.beside)
-    truth.values["setups.10.travel.beside", ""] = complex(case.sideways)
-    truth.values["setups.10.travel.nearer", ""] = complex(case.deep)
+    truth.values["setups.10.travel.beside", ""] = complex(case.sideways * OVER)
+    truth.values["setups.10.travel.nearer", ""] = complex(case.deep * OVER)
     truth.values["setups.10.head.uncertainty", ""] = complex(case.deep)
     truth.places["setups.10.cut.teeth.each.tangential", ""] = np.array(case.each)
     floor = walk(read_job_text(job(case, what), "gaps.yaml"))

@@ -145,7 +145,7 @@ class Boxes:
         for key, value, way in (("beside", travel.beside, "sideways"), ("nearer", travel.nearer, "towards the cutter")):
             if value is not None:
                 says = f"bar in place of the work, {way}, over {over}"
-                yield self.plain(f"{path}.{key}", says, f"± {self.show.fine(value)}", self.fine)
+                yield self.reading(f"{path}.{key}", says, value, signed=True)
 
     def _cut(self, setup: Setup, name: str, cut: Cut, path: str) -> Iterator[Row]:
         ref = self.found.loaded.ref(name, self.found.floor.part_of.get(setup.op))
@@ -157,8 +157,7 @@ class Boxes:
         if cut.error is not None:
             yield self.reading(f"{path}.error", f"length of {name}, off its plan", cut.error, signed=True)
         if cut.off_centre is not None:
-            plan = f"± {self.show.fine(cut.off_centre)}"
-            yield self.plain(f"{path}.off_centre", f"cutter of {name}, off the axis", plan, self.fine)
+            yield self.reading(f"{path}.off_centre", f"cutter of {name}, off the axis", cut.off_centre, signed=True)
         if cut.depth_from is not None:
             touched = cut.depth_from
             key = f"{path}.depth_from"

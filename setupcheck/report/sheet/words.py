@@ -105,8 +105,8 @@ class Words:
     def travel(self, travel: Travel) -> list[Said]:
         """How the axis of the work lies to the cutter's travel."""
         ways = ((travel.beside, "sideways"), (travel.nearer, "towards the cutter"))
-        off = " and ".join(f"within ± {self.show.fine(v)} {way}" for v, way in ways if v is not None)
-        return [Said("Travel", f"work along the cutter's travel {off}, read over {self.show.length(travel.over)}")]
+        off = ", ".join(f"{way} {self.show.planned(v)}" for v, way in ways if v is not None)
+        return [Said("Travel", f"work off the cutter's travel over {self.show.length(travel.over)}: {off}")]
 
     def divide(self, divide: Divide, scope: Scope) -> list[Said]:
         """How the circle is divided."""
@@ -141,7 +141,7 @@ class Words:
         if cut.cutter is not None:
             yield self.cutter(cut.cutter, self.found.loaded.job.cutters.get(cut.cutter))
         if cut.off_centre is not None:
-            yield f"its middle on the axis within ± {self.show.fine(cut.off_centre)}"
+            yield f"its middle off the axis {self.show.planned(cut.off_centre)}"
         if cut.depth is not None:
             touched = (
                 f" from {paper(cut.depth_from.surface, 40)}, the surface that is touched" if cut.depth_from else ""
