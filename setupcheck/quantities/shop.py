@@ -122,7 +122,8 @@ class Outline:
 def outline(surface: Surface) -> Outline:
     """Nominal shape as the drawing has it [mm]."""
     if isinstance(surface, Round):
-        return Outline(surface.kind, surface.low, surface.high, surface.diameter.value, 0)
+        larger = max(surface.diameter.value, surface.to_diameter or 0.0)  # of a taper: what meets least stock outside
+        return Outline(surface.kind, surface.low, surface.high, larger, 0)
     if isinstance(surface, Flat):
         return Outline(surface.kind, surface.at, surface.at, surface.diameter, surface.facing)
     if isinstance(surface, Throat):

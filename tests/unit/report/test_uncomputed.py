@@ -30,7 +30,7 @@ from tests.unit.report.sample import GEAR, PLATE, WHEEL, changed, line_of, loade
 READ = {
     "Dimension": "nominal lower upper fit measured uncertainty at_temperature",
     "Deviation": "at_most measured uncertainty standard_uncertainty high_at device mark indicator",
-    "Round": "kind diameter low high hole made",
+    "Round": "kind diameter low high hole made to_diameter",
     "Flat": "kind at facing diameter hole made",
     "Throat": "kind diameter at made",
     "Toothing": "kind count on_circle at width pressure_angle module cone made",
