@@ -189,7 +189,9 @@ def kept_as(entry: DialEntry) -> str:
     given = entry.given
     if not (given.device and given.mark == "kept"):
         return ""
-    what = {"square": "face_runout", "machine": "axis"}.get(entry.step, "runout")  # as the route names these causes
+    what = {"square": "face_runout", "bought-face": "face_runout", "machine": "axis"}.get(
+        entry.step, "runout"
+    )  # as the route names these causes
     return kept_key(given, what, second=entry.step == "and_centre")
 
 
