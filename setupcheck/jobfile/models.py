@@ -171,6 +171,7 @@ class Round(Shop):
     kind       what it is;  made  `stock`: the blank brings it;  roughness  with its figure, as in Rz 6.3 um
     diameter   with its limits or as measured [mm];  hole  through its middle, where it is hollow [mm]
     from, to   its two ends along the part [mm];  pitch  of a thread [mm]
+    to_diameter  of a taper at `to` [mm], `diameter` then being that at `from`
     """
 
     kind: Literal["cylinder", "bore", "taper", "thread"]
@@ -181,6 +182,13 @@ class Round(Shop):
     roughness: Roughness | None = None
     made: Literal["stock"] | None = None
     pitch: Size | None = None
+    to_diameter: Size | None = None
+
+    @model_validator(mode="after")
+    def only_a_taper_has_two_diameters(self) -> Self:
+        if self.to_diameter is not None and self.kind != "taper":
+            raise ValueError(f"a {self.kind} has one diameter. Drop to_diameter, or write kind: taper")
+        return self
 
     @model_validator(mode="after")
     def it_has_a_length(self, info: ValidationInfo) -> Self:
@@ -230,6 +238,7 @@ class Toothing(Shop):
     kind   what it is;  made  `stock`: the blank brings it;  count  of the teeth
     at     where the mid-plane stands along the part [mm];  width  of the face, half on either side [mm]
     on_circle  diameter of the pitch circle [mm];  module  [mm];  pressure_angle  of the flanks [rad]
+    cone   of a bevel: angle of its root cone to the axis [rad], `width` then lies along the cone
     """
 
     kind: Literal["teeth"]
@@ -239,6 +248,7 @@ class Toothing(Shop):
     width: Size | None = None
     pressure_angle: Angle | None = None
     module: Size | None = None
+    cone: Angle | None = None
     made: Literal["stock"] | None = None
 
 

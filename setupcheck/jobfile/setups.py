@@ -3,7 +3,7 @@
 # Annotations are evaluated as they stand (no __future__ import): pydantic would have to compile each of them from its text.
 from typing import Annotated, Literal, Self
 
-from pydantic import BeforeValidator, Field, ValidationInfo, model_validator
+from pydantic import Field, ValidationInfo, model_validator
 
 from setupcheck.jobfile.asked import Checked, Require, Waive
 from setupcheck.jobfile.dividing import Divide
@@ -20,6 +20,8 @@ from setupcheck.jobfile.models import (
 )
 from setupcheck.jobfile.prove_out import ProveOut
 from setupcheck.jobfile.service import JointService
+from setupcheck.jobfile.touched import DepthFrom, Scatter
+from setupcheck.jobfile.travel import Travel
 from setupcheck.jobfile.truing import Trued, check_it_is_loose
 from setupcheck.jobfile.types import (
     Angle,
@@ -249,36 +251,6 @@ class Head(Shop):
     mid_plane: MidPlane | None = None
 
 
-class Scatter(Shop):
-    """What each hole or tooth adds for itself, ±.
-
-    radial, tangential  from and round the axis [mm];  by  the tool that wanders
-    """
-
-    radial: Bound | None = None
-    tangential: Bound | None = None
-    by: str | None = None
-
-
-class Touched(Shop):
-    """The surface the depth is counted from, its diameter as measured or how far it may be off, and how it is touched.
-
-    surface  the one that is touched;  measured  its diameter [mm];  uncertainty  of that, expanded, k = 2 [mm]
-    at_most  how far its diameter may be from the drawing, either way [mm]
-    tool     `standing` (tip in the mid-plane) or `turning` (a turning cutter meets the corners of a throat first)
-    """
-
-    surface: str
-    measured: Size | None = None
-    uncertainty: Bound | None = None
-    at_most: Bound | None = None
-    tool: Literal["standing", "turning"] | None = None
-
-
-DepthFrom = Annotated[Touched, BeforeValidator(lambda g: {"surface": g} if isinstance(g, str) else g)]
-"""A surface's name alone, or what is known of its diameter beside it."""
-
-
 class Cut(Shop):
     """One surface cut in a setup. An empty map finishes it to its drawing size.
 
@@ -293,6 +265,7 @@ class Cut(Shop):
     finishing_cut      thinnest cut that the tool still takes, on the radius [mm]
     form               error of the old surface's form, on the radius [mm]
     each               what each hole or tooth adds for itself
+    off_centre         how far the middle of the cutter stands beside the axis that gaps are indexed about
     cutter             one of `cutters`;  tool_change_after  so many gaps of all passes
     depth              of a gap [mm];  depth_error  of it [mm];  depth_from  the surface it is counted from
     passes             depths that are cut one after the other, together the whole depth [mm]
@@ -315,6 +288,7 @@ class Cut(Shop):
     passes: tuple[Size, ...] = ()
     prove_out: ProveOut | None = None
     each: Scatter | None = None
+    off_centre: Error | None = None
     spindle_to_axis: dict[Literal["x", "y"], Dim] | None = None
     tool_change_after: Whole | None = Field(default=None, ge=1)
 
@@ -382,7 +356,8 @@ class Setup(Shop):
     op     its number;  note  for people;  machine  one of `machines`, or its kind;  part  that is held
     looks_at_tool  the end of the part that faces the tool
     hold   how the part is held;  keeps  instead, the operation whose holding was never opened
-    head   its tilt;  divide  how the circle is divided;  cut  each surface that is cut, by its name
+    head   its tilt;  travel  how the work's axis lies to it
+    divide  how the circle is divided;  cut  each surface that is cut, by its name
     join   two parts put together
     """
 
@@ -394,6 +369,7 @@ class Setup(Shop):
     keeps: Whole | None = None
     hold: Hold | None = None
     head: Head | None = None
+    travel: Travel | None = None
     divide: Divide | None = None
     cut: dict[str, Cut] = Field(default_factory=dict)
     join: Join | None = None

@@ -10,7 +10,19 @@ from typing import Annotated, Any, get_args, get_origin
 
 from pydantic import BaseModel
 
-from setupcheck.jobfile import asked, backlash_read, dividing, grinding, marks, models, service, setups, types, worm
+from setupcheck.jobfile import (
+    asked,
+    backlash_read,
+    dividing,
+    grinding,
+    marks,
+    models,
+    service,
+    setups,
+    touched,
+    types,
+    worm,
+)
 
 Schema = dict[str, Any]
 
@@ -120,7 +132,7 @@ PLAIN: dict[type[BaseModel], Schema] = {
     worm.Thickness: _DIMENSION,
     models.Deviation: _BOUND,
     setups.Through: {"title": "a device", "type": "string", "examples": ["centres"]},
-    setups.Touched: {"title": "a surface", "type": "string", "examples": ["throat"]},
+    touched.Touched: {"title": "a surface", "type": "string", "examples": ["throat"]},
 }
 """Records that a single value may stand for, wherever they stand."""
 

@@ -25,6 +25,9 @@ OF_KEY: Mapping[str, tuple[str, ...]] = {
     "axis_runout": ("axis",),
     "error": ("position", "touch", "reading"),
     "depth_error": ("position", "touch", "reading"),
+    "off_centre": ("position", "touch", "reading"),
+    "beside": ("reading",),
+    "nearer": ("reading",),
 }
 """What an error entry that names a device may take from its record, first found. Source: as typical values are taken."""
 

@@ -10,6 +10,7 @@ from setupcheck.quantities.book import Quantity
 from setupcheck.quantities.chilling import CHILLING
 from setupcheck.quantities.choosing import CHOOSING
 from setupcheck.quantities.clamping import CLAMP
+from setupcheck.quantities.cones import CONES
 from setupcheck.quantities.contact import CONTACT
 from setupcheck.quantities.contact_advice import CONTACT_ADVICE
 from setupcheck.quantities.contact_setting import CONTACT_SETTING
@@ -282,6 +283,7 @@ TABLES: tuple[Quantity, ...] = (
     *WAYS,
     *INDEX_TABLE,
     *TILT,
+    *CONES,
     *HEAD,
     *JOINING,
     *KEYWAYS,

@@ -140,6 +140,8 @@ QUANTITIES: Mapping[str, FakeQuantity] = {
         FakeQuantity("divide.plumb_advice", "setup", "", 0),
         FakeQuantity("divide.drift_advice", "setup", "", 0),
         FakeQuantity("tilt.error", "setup", "arcmin", 1),
+        FakeQuantity("tilt.cone_error", "setup", "arcmin", 1),
+        FakeQuantity("tilt.cone_advice", "setup", "", 0),
         FakeQuantity("cutter.passes_left", "cut", "um", 1),
         FakeQuantity("cutter.last_pass", "cut", "mm", 3),
         FakeQuantity("fit.kind", "join", "", 0),

@@ -132,6 +132,8 @@ def spelled(found: Review, part: str, name: str, most: float, size: float) -> st
             told = f"at {plain(found, surface.at)}" if surface.kind == "face" else "centre"
         case kind:
             told = f"Ø{stated_size(found, part, name)}"
+            if kind == "taper" and surface.to_diameter is not None:
+                told += f" to {plain(found, surface.to_diameter)}"
             if kind in ("taper", "thread"):
                 told = f"{kind} {told}"
     called = " ".join(clean(name).split())

@@ -27,7 +27,12 @@ class Way:
 
     def of(self, piece: Piece) -> Piece:
         ends = sorted((self.sense * piece.low + self.shift, self.sense * piece.high + self.shift))
-        return replace(piece, low=ends[0], high=ends[1], facing=self.sense * piece.facing)
+        sides = _other_way(piece.ends) if self.sense < 0 else piece.ends
+        return replace(piece, low=ends[0], high=ends[1], facing=self.sense * piece.facing, ends=sides)
+
+
+def _other_way(ends: tuple[float, float] | None) -> tuple[float, float] | None:
+    return (ends[1], ends[0]) if ends is not None else None
 
 
 def finished(found: Review, part: str) -> list[Piece]:
@@ -125,12 +130,15 @@ def _piece(found: Review, part: str, name: str, surface: Surface, op: int | None
         surface.made == "stock",
         trims=isinstance(surface, Flat) and op is not None and _towards_tool(found, part, op) == shape.facing,
     )
+    if isinstance(surface, Round) and surface.to_diameter is not None:
+        piece = replace(piece, ends=(surface.diameter.value / 2.0, surface.to_diameter / 2.0))
     if isinstance(surface, Round | Flat) and surface.hole:
         return replace(piece, hole=surface.hole / 2.0)
     if isinstance(surface, Throat):
         return replace(piece, hollow=surface.radius)
-    if isinstance(surface, Toothing):
-        return replace(piece, root=_root(found, part, name, surface, op))
+    if isinstance(surface, Toothing):  # the root of a cone is not drawn: its depth is stated at one end alone
+        cone = surface.cone is not None
+        return replace(piece, cone=cone, root=None if cone else _root(found, part, name, surface, op))
     if isinstance(surface, Pattern):
         return replace(piece, size=surface.diameter or surface.width)
     return piece
@@ -143,7 +151,9 @@ def _left(found: Review, piece: Piece, state: State) -> Piece:
     sense, shift = found.floor.frames.get(piece.part, (1, 0.0))
     ends = sorted((sense * (state.low - shift), sense * (state.high - shift)))
     radius = state.diameter / 2.0 if state.diameter and state.diameter > 0.0 else piece.radius
-    return replace(piece, low=ends[0], high=ends[1], radius=radius)
+    left = (radius or 0.0) - (piece.radius or 0.0)  # stock on a taper lies on all of it
+    sides = (piece.ends[0] + left, piece.ends[1] + left) if piece.ends is not None else None
+    return replace(piece, low=ends[0], high=ends[1], radius=radius, ends=sides)
 
 
 def _towards_tool(found: Review, part: str, op: int) -> int:

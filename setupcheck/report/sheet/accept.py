@@ -5,7 +5,7 @@ from __future__ import annotations
 from setupcheck.flow import Review
 from setupcheck.quantities.gates import Gate
 from setupcheck.quantities.length_gates import LengthGate
-from setupcheck.report.gates import bands_of, ends_of, is_far, is_idle, lengths_of, near_in_words
+from setupcheck.report.gates import bands_of, ends_of, is_enough, is_far, is_idle, lengths_of, near_in_words
 from setupcheck.report.sheet.showing import paper
 from setupcheck.report.wording import on_the_dial, title_of
 
@@ -30,6 +30,8 @@ def _dial(found: Review, gate: Gate, titles: dict[str, str], *, inches: bool) ->
     by = titles.get(gate.by, gate.by)
     if gate.reading is not None and gate.reading <= 0.0:
         return LOST.format(by)
+    if gate.reading is not None and is_enough(gate):
+        return f"up to {on_the_dial(gate.reading, inches=inches, step=gate.indicator)}: indicate no finer; {by}"
     if is_idle(gate) or gate.reading is None:
         return FREE
     least = (

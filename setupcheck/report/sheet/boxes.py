@@ -10,6 +10,7 @@ from collections.abc import Iterator, Mapping, Sequence
 from setupcheck.flow import Review
 from setupcheck.jobfile.models import Deviation, Dimension, Part, Round, Toothing
 from setupcheck.jobfile.setups import Cut, Hold, Join, Setup
+from setupcheck.jobfile.travel import Travel
 from setupcheck.record import record
 from setupcheck.report.sheet.accept import accepted
 from setupcheck.report.sheet.showing import Showing
@@ -92,6 +93,8 @@ class Boxes:
                         f"{path}.head.mid_plane.error", "mid-plane, how far off it was found", middle.error, signed=True
                     )
                 )
+        if setup.travel is not None:
+            rows += self._travel(setup.travel, f"{path}.travel")
         for name, cut in setup.cut.items():
             rows += self._cut(setup, name, cut, f"{path}.cut.{name}")
         if setup.join is not None:
@@ -137,6 +140,13 @@ class Boxes:
             if isinstance(length, Dimension):
                 yield self.size(f"{path}.spacers[{number}].length", f"thickness of {name}", length)
 
+    def _travel(self, travel: Travel, path: str) -> Iterator[Row]:
+        over = self.show.length(travel.over)
+        for key, value, way in (("beside", travel.beside, "sideways"), ("nearer", travel.nearer, "towards the cutter")):
+            if value is not None:
+                says = f"bar in place of the work, {way}, over {over}"
+                yield self.reading(f"{path}.{key}", says, value, signed=True)
+
     def _cut(self, setup: Setup, name: str, cut: Cut, path: str) -> Iterator[Row]:
         ref = self.found.loaded.ref(name, self.found.floor.part_of.get(setup.op))
         surface = self.found.loaded.job.parts[ref.part].surfaces[ref.surface]
@@ -146,6 +156,8 @@ class Boxes:
             yield self.size(key, f"diameter of {ref.surface}", surface.diameter)
         if cut.error is not None:
             yield self.reading(f"{path}.error", f"length of {name}, off its plan", cut.error, signed=True)
+        if cut.off_centre is not None:
+            yield self.reading(f"{path}.off_centre", f"cutter of {name}, off the axis", cut.off_centre, signed=True)
         if cut.depth_from is not None:
             touched = cut.depth_from
             key = f"{path}.depth_from"

@@ -39,7 +39,11 @@ def _of(show: Showing, setup: Setup) -> Iterator[str]:
     if setup.divide is not None:
         circle = f": circle of {setup.divide.circle} holes" if setup.divide.circle else ""
         yield f"Dividing ready by its index table{circle}; one trial turn round closes on place 1"
+    if setup.travel is not None:
+        yield "A bar in place of the work read along the cutter's travel, before the first gap"
     for name, cut in setup.cut.items():
+        if cut.off_centre is not None:
+            yield f"Cutter of {paper(name, 40)} on the axis, shown by a trial cut turned half round or by a dial"
         if cut.depth_from is not None:
             yield f"Depth of {paper(name, 40)} counted from {paper(cut.depth_from.surface, 40)} as touched, dial at zero"
     if setup.cut and setup.divide is not None:

@@ -336,7 +336,11 @@ def _operation(found: Review, setup: Setup, boxes: Boxes, drawn: dict[str, Pictu
         cautions=tuple(_caution(c, [c]) for c in own),
         general=len(own) < len(mine),
         troubles=tuple(_troubles(found, setup.op)),
-        held=(*keeps, *(words.hold(setup.hold) if setup.hold is not None else [])),
+        held=(
+            *keeps,
+            *(words.hold(setup.hold) if setup.hold is not None else []),
+            *(words.travel(setup.travel) if setup.travel is not None else []),
+        ),
         head=tuple(words.head(setup.head)) if setup.head is not None else (),
         divide=tuple(words.divide(setup.divide, scope)) if setup.divide is not None else (),
         cuts=tuple(words.cuts(setup)),

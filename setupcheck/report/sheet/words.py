@@ -8,6 +8,7 @@ from setupcheck.flow import Review
 from setupcheck.jobfile.dividing import Divide
 from setupcheck.jobfile.models import Cutter
 from setupcheck.jobfile.setups import Centre, Cut, Head, Hold, Join, Setup
+from setupcheck.jobfile.travel import Travel
 from setupcheck.quantities.book import Known, Open, Scope
 from setupcheck.quantities.devices import DEVICES
 from setupcheck.record import record
@@ -101,6 +102,12 @@ class Words:
             lines.append(Said("Mid-plane", f"{when}{error}"))
         return lines
 
+    def travel(self, travel: Travel) -> list[Said]:
+        """How the axis of the work lies to the cutter's travel."""
+        ways = ((travel.beside, "sideways"), (travel.nearer, "towards the cutter"))
+        off = ", ".join(f"{way} {self.show.planned(v)}" for v, way in ways if v is not None)
+        return [Said("Travel", f"work off the cutter's travel over {self.show.length(travel.over)}: {off}")]
+
     def divide(self, divide: Divide, scope: Scope) -> list[Said]:
         """How the circle is divided."""
         circle = f", circle of {divide.circle} holes" if divide.circle else ""
@@ -133,6 +140,8 @@ class Words:
             yield f"cut out of {paper(cut.from_surface, 40)}"
         if cut.cutter is not None:
             yield self.cutter(cut.cutter, self.found.loaded.job.cutters.get(cut.cutter))
+        if cut.off_centre is not None:
+            yield f"its middle off the axis {self.show.planned(cut.off_centre)}"
         if cut.depth is not None:
             touched = (
                 f" from {paper(cut.depth_from.surface, 40)}, the surface that is touched" if cut.depth_from else ""

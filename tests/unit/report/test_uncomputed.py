@@ -19,6 +19,7 @@ from setupcheck.jobfile import (
     properties,
     prove_out,
     setups,
+    travel,
     truing,
     worm,
 )
@@ -30,10 +31,11 @@ from tests.unit.report.sample import GEAR, PLATE, WHEEL, changed, line_of, loade
 READ = {
     "Dimension": "nominal lower upper fit measured uncertainty at_temperature",
     "Deviation": "at_most measured uncertainty standard_uncertainty high_at device mark indicator",
-    "Round": "kind diameter low high hole made",
+    "Round": "kind diameter low high hole made to_diameter",
     "Flat": "kind at facing diameter hole made",
     "Throat": "kind diameter at made",
-    "Toothing": "kind count on_circle at width pressure_angle module made",
+    "Toothing": "kind count on_circle at width pressure_angle module cone made",
+    "Travel": "beside nearer over",
     "Pattern": "kind count on_circle at diameter width angle made",
     "Relation": "of about from_ runout face_runout across length division",
     "Part": "material surfaces given",
@@ -98,10 +100,12 @@ RECORDS = {
         properties,
         prove_out,
         setups,
+        touched,
         truing,
         heating,
         worm,
         marks,
+        travel,
     )
     for record in vars(module).values()
     if inspect.isclass(record)
@@ -158,7 +162,10 @@ def test_a_tilt_that_is_compared_with_the_worm_is_not_told_and_any_other_is() ->
     assert not any(line.startswith("op 40") for line in told(WHEEL))
     hobbed = changed(WHEEL, ("fly: {kind: single-point", "fly: {kind: hob"))
     said = " ".join(told(hobbed))
-    assert "tilt 3deg 34' 35\" (compared with the worm only where its wheel is cut gap by gap)" in said
+    assert (
+        "tilt 3deg 34' 35\" (compared with a worm whose wheel is cut gap by gap, or with the root cone of bevel teeth)"
+        in said
+    )
     assert "depth 3.3 mm of teeth (held against the passes only)" in said
 
 
