@@ -19,7 +19,7 @@ from setupcheck.rulebook import (
     ordered,
     verdict,
 )
-from setupcheck.rulebook.house import load_house
+from setupcheck.rulebook.house_file import load_house
 
 from .bookshelf import QUANTITIES, RULE, load
 from .fakebook import FakeBook, FakeScope, Has, Lacks, facts_from
