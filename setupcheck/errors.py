@@ -82,6 +82,8 @@ class RuleBookError(SetupcheckError):
 class HouseError(RuleBookError):
     """A house file that cannot be used, with everything that is wrong in it, sorted by line."""
 
+    HOLDS = "Nothing of the house file acts; the shipped rule book stays as it is (--no-house judges by it alone)."
+
     def __init__(self, wrong: Iterable[RuleBookError]) -> None:
         found = tuple(sorted({str(one): one for one in wrong}.values(), key=lambda one: (one.file, one.line)))
         first = found[0] if found else RuleBookError("", 0, "")
@@ -93,6 +95,7 @@ class HouseError(RuleBookError):
         shown = [str(one) for one in self.wrong[:MOST_SHOWN]]
         if len(self.wrong) > MOST_SHOWN:
             shown.append(f"and {len(self.wrong) - MOST_SHOWN} more")
+        shown.append(self.HOLDS)
         return "\n".join(shown)
 
 
