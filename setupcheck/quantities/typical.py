@@ -122,9 +122,26 @@ def own_name(series: str, entries: int) -> str:
     return f"{series} ({OWN}, {entries} entries)"
 
 
+_OF_HOUSE = " (house value of "
+
+
+def house_name(row: str, house: str) -> str:
+    """As findings name a value of a house file in place of a typical one.
+
+    >>> house_name("four-jaw runout", "Toolroom")
+    'four-jaw runout (house value of Toolroom, shop record)'
+    """
+    return f"{row}{_OF_HOUSE}{house}, {OWN})"
+
+
+def is_of_house(name: str) -> bool:
+    """Whether a name of what a value rests on is that of a house file's value."""
+    return _OF_HOUSE in name
+
+
 def is_own(name: str) -> bool:
-    """Whether a name of what a value rests on is that of the shop's own record; no typical value has such a name."""
-    return f" ({OWN}, " in name
+    """Whether a name of what a value rests on is the shop's own, by record or house file; no typical value's is such."""
+    return f" ({OWN}, " in name or is_of_house(name)
 
 
 def typical_length(device: str) -> Typical | None:

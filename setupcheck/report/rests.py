@@ -8,7 +8,7 @@ from typing import TYPE_CHECKING
 from setupcheck.jobfile.reading import LoadedJob
 from setupcheck.ledger.causes import Cause
 from setupcheck.notation import FACTOR
-from setupcheck.quantities.typical import is_own
+from setupcheck.quantities.typical import is_of_house, is_own
 from setupcheck.report.wording import clean, wrap
 
 if TYPE_CHECKING:
@@ -25,12 +25,14 @@ def rests_in_words(names: Sequence[str]) -> Iterator[str]:
 
 
 def how_known(cause: Cause, loaded: LoadedJob) -> str:
-    """A word behind the size of a cause: measured, typical, of the record; nothing where the planner stated it."""
+    """A word behind the size of a cause: measured, typical, of record or house; nothing where the planner stated it."""
     if cause.mode in ("measured", "typical"):
         return f" {cause.mode}"
     owned = loaded.owned(*cause.paths)
     if not owned:
         return ""
+    if any(map(is_of_house, owned)):
+        return " by house"
     return " by record" if all(map(is_own, owned)) else " typical"
 
 

@@ -26,7 +26,7 @@ from setupcheck.report.text import counts, limits_in_words
 from setupcheck.report.uncomputed import in_lines, uncomputed
 from setupcheck.report.wording import finer, title_of, unit_of
 from setupcheck.report.worked_out import worked_out
-from setupcheck.rulebook.records import CautionLine
+from setupcheck.rulebook.records import CautionLine, Finding
 
 DATUM = {
     "stock": "stock, as the blank brings it",
@@ -188,8 +188,12 @@ def sheet_of(found: Review, read: ReadBack | None = None) -> Sheet:
         counts=counts(found),
         units="inch" if found.book.inches else "mm",
         room=f"{job.room:g} degC",
-        parts=tuple(
-            Said(paper(name, 60), paper(part.material or "material not stated", 60)) for name, part in job.parts.items()
+        parts=(
+            *_house(found),
+            *(
+                Said(paper(name, 60), paper(part.material or "material not stated", 60))
+                for name, part in job.parts.items()
+            ),
         ),
         troubles=tuple(_troubles(found)),
         unsigned=len(left),
@@ -228,15 +232,26 @@ def _tightest(found: Review, drawn: dict[str, Picture]) -> tuple[tuple[Picture, 
 def _troubles(found: Review, op: int | None = None) -> list[Trouble]:
     """What is not passed, in the whole job or in one operation."""
     return [
-        Trouble(f.verdict, f.rule, paper(f.at or "job", 80), f.line, paper(f.message, 400), paper(_do(found, f), 400))
+        Trouble(f.verdict, f.rule, paper(f.at or "job", 80), f.line, paper(_said(f), 400), paper(_do(found, f), 400))
         for f in found.evaluation.findings
         if f.verdict in ("fail", "open", "warn", "waived") and op in (None, f.op)
     ]
 
 
-def _do(found: Review, finding: object) -> str:
-    from setupcheck.rulebook import Finding
+def _said(finding: Finding) -> str:
+    """The message, and what a house file did to the rule."""
+    return f"{finding.message}; by {finding.house}" if finding.house else finding.message
 
+
+def _house(found: Review) -> tuple[Said, ...]:
+    """The house file that acts, as a line of the cover."""
+    house = found.house
+    if house is None:
+        return ()
+    return (Said("House file", f"{paper(house.name, 60)}: {paper(house.file, 80)}, sha256 {house.sha256[:16]}"),)
+
+
+def _do(found: Review, finding: object) -> str:
     assert isinstance(finding, Finding)
     if finding.verdict == "open" and finding.missing:
         return f"Fill {', '.join(finding.missing[:4])}"
