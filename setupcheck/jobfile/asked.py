@@ -5,7 +5,7 @@ from typing import Annotated, Literal, Self
 
 from pydantic import BeforeValidator, Field, model_validator
 
-from setupcheck.jobfile.types import Bound, Length, Limit, Limits, Shop, Size, Whole
+from setupcheck.jobfile.types import AngleBound, Bound, Length, Limit, Limits, Shop, Size, Whole
 
 What = Literal[
     "run-out",
@@ -32,6 +32,9 @@ What = Literal[
 ]
 
 
+READ_BY_HEADS = ("index-range", "index-within", "on-workpiece")
+"""Figures of an angle that several read heads may take the mean of."""
+
 Of = Annotated[str, BeforeValidator(lambda given: str(given) if type(given) is int else given)]
 """The name of a surface, or the number of an operation."""
 
@@ -48,6 +51,7 @@ class Require(Shop):
     across    diameter of the circle a face is read on [mm];  at  height along the part it is read at [mm]
     on_diameter  of the workpiece that the teeth are to divide [mm]
     clock     keyway, gap or hole that angles count from;  film  thickness of the blue [mm]
+    heads     that read lines, evenly round the circle, their mean taken;  heads_off  each from its place, ± [rad]
     """
 
     what: What
@@ -63,6 +67,8 @@ class Require(Shop):
     on_diameter: Size | None = None
     clock: str | None = None
     film: Bound | None = None
+    heads: Whole | None = Field(default=None, ge=1, le=12)
+    heads_off: AngleBound | None = None
     name: str | None = None
 
     @model_validator(mode="after")
@@ -71,6 +77,14 @@ class Require(Shop):
         stated += [self.at_most] if self.at_most is not None or self.at_least is not None else []
         if len(stated) != 1:
             raise ValueError("a requirement has one limit. Write at_most, at_least, between: [low, high], or grade")
+        return self
+
+    @model_validator(mode="after")
+    def heads_read_a_division(self) -> Self:
+        if self.heads is not None and self.what not in READ_BY_HEADS:
+            raise ValueError(f"heads read an angle, not {self.what}. Drop heads, or write what: index-within")
+        if self.heads_off is not None and (self.heads or 1) == 1:
+            raise ValueError("heads_off says how evenly several heads stand. Write heads: 2 beside it, or drop it")
         return self
 
 

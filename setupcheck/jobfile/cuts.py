@@ -38,5 +38,5 @@ def _one(drawing: Drawing, cut: Mapping[str, object], surface: Surface | None, n
             continue
         elif surface.kind == "face" and key != "leave":
             yield key, f"{name} is a face, which has no diameter. Write leave: {quoted(cut[key]).strip(chr(39))}"
-        elif surface.kind in ("teeth", "holes", "slot"):
+        elif surface.kind in ("teeth", "holes", "slot", "lines"):
             yield key, f"{name} is {spoken(surface)}, on which no stock is counted. Write state: rough"

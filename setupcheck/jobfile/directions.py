@@ -55,7 +55,9 @@ def _alone(drawing: Drawing) -> Iterator[tuple[Path, object]]:
             for key in ("runout", "face_runout"):
                 yield ("parts", part, "given", i, key), map_of(relation).get(key)
     for i, setup in enumerate(drawing.setups):
-        yield ("setups", i, "join", "fit_error"), map_of(setup.get("join")).get("fit_error")
+        join = map_of(setup.get("join"))
+        yield ("setups", i, "join", "fit_error"), join.get("fit_error")
+        yield ("setups", i, "join", "trued", "runout"), map_of(join.get("trued")).get("runout")
 
 
 def _of_holds(drawing: Drawing) -> Iterator[tuple[Path, object, str | None]]:

@@ -15,7 +15,7 @@ from setupcheck.record import record
 
 TOUCH = 1e-6  # mm; two lengths that differ by less are the same: far below every size, far above rounding; our choice
 
-_SPOKEN = {"teeth": "a toothing", "holes": "a hole pattern", "centre": "a centre hole"}
+_SPOKEN = {"teeth": "a toothing", "holes": "a hole pattern", "lines": "a graduation", "centre": "a centre hole"}
 
 
 @record

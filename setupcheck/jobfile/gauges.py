@@ -50,4 +50,6 @@ def _is_diameter(path: Path) -> bool:
 
 
 def _is_error_of_a_hold(path: Path) -> bool:
-    return len(path) == 5 and path[0] == "setups" and path[2] == "hold" and _INDICATED.get(str(path[3])) == path[4]
+    if len(path) != 5 or path[0] != "setups":
+        return False
+    return path[2:] == ("join", "trued", "runout") or (path[2] == "hold" and _INDICATED.get(str(path[3])) == path[4])

@@ -8,7 +8,12 @@ from setupcheck.jobfile.drawing import Drawing
 from setupcheck.jobfile.names import Miss
 from setupcheck.jobfile.nodes import list_of, map_of
 
-_STATES = (("about", "runout", "run-out"), ("about", "face_runout", "face run-out"), ("from", "length", "distance"))
+_STATES = (
+    ("about", "runout", "run-out"),
+    ("about", "face_runout", "face run-out"),
+    ("about", "division", "division"),
+    ("from", "length", "distance"),
+)
 """Reference, key and name of what a relation states."""
 
 

@@ -23,11 +23,29 @@ Small = Annotated[float, Read(_small)]
 """A small length above zero [mm]; the unit must be written."""
 
 
+LARGEST_MAGNIFICATION = 500.0  # projectors end at 100, microscopes of the workshop below 500; our screening choice
+
+
+def _magnification(given: object, info: ValidationInfo) -> float:
+    text = str(scalar(given)).strip().removesuffix(":1").removesuffix("x")
+    value = notation.number(text)
+    if not 0.0 < value <= LARGEST_MAGNIFICATION:
+        raise ValueError(
+            f"{notation.quoted(given)} is no magnification. Write how many times larger the insert is shown, as in 20"
+        )
+    return value
+
+
+Magnification = Annotated[float, Read(_magnification)]
+"""How many times larger something is shown, above zero; below 1 it is shown smaller."""
+
+
 class Grinding(Shop):
     """How an insert is ground point by point with the rounded edge of a wheel.
 
     wheel_radius  of the wheel's edge [mm];  step  of the grinder's readings [mm]
     form_error    that the flank may have, square to it [mm]
+    magnification  at which the insert is laid over its drawing, by projector or as a drawing
     stop_error    of the stop that the shank lies against, out of square either way [rad]
     way           how the second flank is come by
     shank_side    of the shank where the wheel is touched off, from its middle line [mm]
@@ -37,6 +55,7 @@ class Grinding(Shop):
     wheel_radius: Size | None = None
     step: Small | None = None
     form_error: Small | None = None
+    magnification: Magnification | None = None
     stop_error: AngleBound | None = None
     way: Literal["swung", "turned-over"] | None = None
     shank_side: Size | None = None

@@ -3,9 +3,9 @@
 # Annotations are evaluated as they stand (no __future__ import): pydantic would have to compile each of them from its text.
 from typing import Literal, Self
 
-from pydantic import model_validator
+from pydantic import Field, model_validator
 
-from setupcheck.jobfile.types import Coolant, Duration, Shop, Size, Temperature, TemperatureDifference, Volume
+from setupcheck.jobfile.types import Coolant, Duration, Length, Shop, Size, Temperature, TemperatureDifference, Volume
 
 COLDEST = {"dry-ice": -78.5, "liquid-nitrogen": -196.0}
 """degC that a means of cooling reaches. Source: sublimation and boiling point, published (pages opened)."""
@@ -13,6 +13,17 @@ _ROUNDED = 1.5
 """Kelvin by which people round those two, as in -80 degC. Source: our screening choice."""
 _COUNTED_IN = {"liquid-nitrogen": ("volume", "litres", "5 l"), "dry-ice": ("mass", "kilograms", "2 kg")}
 """What boils off, how it is counted, and an example."""
+
+
+class Near(Shop):
+    """What stays in place on the shaft while the hot hub goes on: `{what: seals, stands: 80 degC, away: 30}`.
+
+    what  it is called;  stands  highest temperature of it [degC];  away  how far from the seat it begins [mm]
+    """
+
+    what: str = Field(min_length=1)
+    stands: Temperature | None = None
+    away: Length | None = Field(default=None, ge=0.0)
 
 
 class Heat(Shop):
@@ -24,6 +35,7 @@ class Heat(Shop):
     gauge         size of the gauge that is tried in the hot bore
     flash_point   of the oil in the bath
     room_volume   of the room where something boils off;  coolant  how much of it, all told
+    near          what stays in place beside the hub and has to stand its heat
     """
 
     hub: Temperature | None = None
@@ -38,6 +50,7 @@ class Heat(Shop):
     flash_point: Temperature | None = None
     room_volume: Volume | None = None
     coolant: Coolant | None = None
+    near: Near | None = None
 
     @model_validator(mode="after")
     def nothing_is_colder_than_what_chills_it(self) -> Self:

@@ -243,14 +243,14 @@ class Toothing(Shop):
 
 
 class Pattern(Shop):
-    """Holes on a circle, or a single slot or keyway.
+    """Holes on a circle, the lines of a graduated disc, or a single slot or keyway.
 
     kind       what it is;  made  `stock`: the blank brings it;  count  of the places, evenly divided
     on_circle  diameter of their circle, 2 x the distance from the axis [mm];  angle  of the first place [rad]
     at         where it stands along the part [mm];  diameter  of a hole [mm];  width  of a slot [mm]
     """
 
-    kind: Literal["holes", "slot"]
+    kind: Literal["holes", "slot", "lines"]
     count: Whole = Field(default=1, ge=1, le=1000)
     on_circle: Size
     at: Length
@@ -270,6 +270,7 @@ class Relation(Shop):
     about    the surface whose axis it turns about;  from  instead, the face it is counted from
     runout   full indicator movement about that axis [mm];  face_runout  of a face, read on the circle `across` [mm]
     across   diameter of the circle that was read on [mm];  length  distance from the face [mm]
+    division  beside runout, of lines, holes or teeth: how far each place may be out for itself, ± [rad]
     """
 
     of: str
@@ -279,6 +280,7 @@ class Relation(Shop):
     face_runout: RunOut | None = None
     across: Size | None = None
     length: Dim | None = None
+    division: AngleBound | None = None
 
     @model_validator(mode="after")
     def it_states_one_relation(self) -> Self:
@@ -288,6 +290,8 @@ class Relation(Shop):
             raise ValueError("a relation `from` a face needs its length. Write length: 8.000 ±0.008")
         if self.about is not None and self.runout is None and self.face_runout is None:
             raise ValueError("a relation `about` an axis needs runout or face_runout. Write runout: 3 um")
+        if self.division is not None and self.runout is None:
+            raise ValueError("division stands beside the run-out of the places. Write runout: 2 um beside it")
         if self.face_runout is not None and self.across is None:
             raise ValueError(
                 "face_runout needs the circle it was read on. Write across: and the diameter of that circle"

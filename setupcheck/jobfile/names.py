@@ -228,6 +228,8 @@ def _setup_misses(
         yield from _surface(join.get(key), (*at, "join", key), surfaces, None)
     for key in ("on", "against"):
         yield from _surface(map_of(join.get("stop")).get(key), (*at, "join", "stop", key), surfaces, None)
+    for key in ("on", "about"):
+        yield from _surface(map_of(join.get("trued")).get(key), (*at, "join", "trued", key), surfaces, None)
 
 
 def _surface(

@@ -35,13 +35,17 @@ _BETWEEN_GAPS = (
 )  # fmt: skip
 """Figures that compare one tooth, gap or hole with another."""
 
-_ONE = {"teeth": "tooth", "holes": "hole", "slot": "slot"}
+_ONE = {"teeth": "tooth", "holes": "hole", "slot": "slot", "lines": "line"}
 
 _DATUMS = {
-    "centre": ("cylinder, bore, taper, thread, centre, throat, teeth, holes", "centred on", "a cylinder or a bore"),
+    "centre": (
+        "cylinder, bore, taper, thread, centre, throat, teeth, holes, lines",
+        "centred on",
+        "a cylinder or a bore",
+    ),
     "square": ("face", "squared on", "a face"),
     "stop": ("face, centre", "stopped on", "a face"),
-    "clock": ("teeth, holes, slot", "clocked on", "a slot, a hole pattern or a toothing"),
+    "clock": ("teeth, holes, slot, lines", "clocked on", "a slot, a hole pattern or a toothing"),
 }
 """For each step of a hold: kinds of surface it can be set on, what it does, what to write."""
 

@@ -20,6 +20,7 @@ from setupcheck.jobfile.models import (
 )
 from setupcheck.jobfile.prove_out import ProveOut
 from setupcheck.jobfile.service import JointService
+from setupcheck.jobfile.truing import Trued, check_it_is_loose
 from setupcheck.jobfile.types import (
     Angle,
     AngleBound,
@@ -334,7 +335,8 @@ class Join(Shop):
     """Two parts put together: the machine axis of this step is the inner part's surface.
 
     outer, inner  the bore and the journal, as in wheel.bore;  by  how they are joined;  stop  the two faces that meet
-    fit_error    full indicator movement of the outer part about the inner one [mm]
+    fit_error    full indicator movement of the outer part about the inner one; `trued`, what setting or clamping adds [mm]
+    trued        what runs true before the joint is made fast
     clearance    diametral play of a sliding fit [mm];  rests  how the outer part lies in it
     heat         of a shrink fit, and its cold;  joint  how its surfaces are
     must_carry   torque and force along the axis
@@ -351,6 +353,7 @@ class Join(Shop):
     by: Literal["shrink", "press", "slide", "taper", "screw", "bond"]
     square: Literal["bore", "shoulder"] | None = None
     fit_error: RunOut | None = None
+    trued: Trued | None = None
     clearance: Play | None = None
     rests: Literal["hanging", "pushed", "free", "centred"] | None = None
     stop: Stop | None = None
@@ -365,6 +368,12 @@ class Join(Shop):
     lead_in: Size | None = None
     growth_at: tuple[Size, ...] = ()
     pairs: tuple[MeasuredPair, ...] = ()
+
+    @model_validator(mode="after")
+    def only_a_loose_part_is_trued(self) -> Self:
+        if self.trued is not None:
+            check_it_is_loose(self.by, self.square)
+        return self
 
 
 class Setup(Shop):

@@ -102,9 +102,11 @@ _TYPES: tuple[tuple[object, Schema], ...] = (
     (dividing.Step, _text("an angle, with x-y a length", '1"', "5 um")),
     (dividing.Target, _text("a distance with its unit", "12 m")),
     (grinding.Small, _SMALL),
+    (grinding.Magnification, _number("how many times larger it is shown", 20, "50:1")),
     (backlash_read.Played, _text("travel of a dial between both flanks, with its unit", "62 um", "0.058 mm")),
     (worm.DiametralPitch, _number("a plain number", 16)),
     (worm.Quotient, _number("a plain number", 12)),
+    (worm.HalfTurn, _text("an angle from 0 to 180 deg", "75 deg")),
     (worm.Budget, _text("an error above zero, with its unit", "10 um")),
     (marks.Spotted, _number("from the middle of the face, or a word", "3.3 mm", *marks.WORDS) | {"pattern": None}),
     (

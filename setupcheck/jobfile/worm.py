@@ -4,6 +4,7 @@ Whatever of the worm's sizes is stated settles the rest; what is stated twice is
 """
 
 # Annotations are evaluated as they stand (no __future__ import): pydantic would have to compile each of them from its text.
+import math
 from typing import Annotated, Literal
 
 from pydantic import AfterValidator, Field, ValidationInfo, model_validator
@@ -130,6 +131,20 @@ Budget = Annotated[float, Read(_budget)]
 """An error that is allowed [mm], above zero; the unit must be written."""
 
 
+def _half_turn(given: object, info: ValidationInfo) -> float:
+    value = notation.angle(scalar(given))
+    if not 0.0 <= value <= math.pi * (1.0 + 1e-12):
+        raise ValueError(
+            f"{notation.quoted(given)} is beyond half a turn. Count from the dead centre at which the worm is farthest from "
+            "the wheel, the shorter way round, as in 75 deg"
+        )
+    return value
+
+
+HalfTurn = Annotated[float, Read(_half_turn)]
+"""An angle from 0 to 180 deg [rad]; the unit must be written."""
+
+
 class Worm(Shop):
     """The worm, by whatever is known of it.
 
@@ -176,6 +191,7 @@ class Mesh(Shop):
     error_budget  transmission error that the cut may leave, along the reference circle, end to end over one pitch [mm]
     mark     what blue showed on the finished wheel
     eccentric  throw of an eccentric that sets the centre distance, distance of its two axes [mm]
+    eccentric_at  where it stands, 0 to 180 deg from its dead centre with the worm farthest from the wheel [rad]
     backlash_read  backlash of the finished wheel in its housing, as read place by place
     """
 
@@ -191,6 +207,7 @@ class Mesh(Shop):
     error_budget: Budget | None = None
     mark: Mark | None = None
     eccentric: Size | None = None
+    eccentric_at: HalfTurn | None = None
     backlash_read: BacklashRead | None = None
 
     @property

@@ -6,7 +6,8 @@ from dataclasses import replace
 
 from setupcheck.jobfile.models import Part, Relation
 from setupcheck.ledger.account import Account
-from setupcheck.ledger.route import State, bought
+from setupcheck.ledger.causes import Cause
+from setupcheck.ledger.route import Pattern, Scatter, State, bought
 from setupcheck.quantities.causes import Entry, Turned, face_lean, run_out, size_error, stated_direction
 from setupcheck.quantities.shop import Outline, outline, unknown_surface
 
@@ -108,10 +109,25 @@ def _related(
     keeps_offset = relation.runout is None
     return replace(
         placed,
-        pattern=state.pattern,
+        pattern=_divided(state.pattern, relation, path, label),
         offset=state.offset if keeps_offset else placed.offset,
         lean=placed.lean if lean is not None or shape.high > shape.low else state.lean,
     )
+
+
+def _divided(pattern: Pattern | None, relation: Relation, path: str, label: str) -> Pattern | None:
+    """The places of a bought part with what each may be out for itself: uniform within the stated bound; open where none is.
+
+    Nothing is known of their order, so neighbours may stand at both ends of it.  Source: the job file.
+    """
+    if pattern is None or pattern.count < 2 or relation.runout is None:
+        return pattern
+    name, where = f"{label}: its division", f"{path}.division"
+    bound = relation.division
+    cause = Cause(name, "undetermined", missing=where)
+    if bound is not None:
+        cause = Cause(name, "length", high=bound, paths=(where,))
+    return replace(pattern, scatter=(*pattern.scatter, Scatter(cause, "angle", bound or 0.0)))
 
 
 def _ends(relation: Relation, path: str, shape: Outline, label: str) -> tuple[Account, Account]:

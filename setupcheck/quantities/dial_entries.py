@@ -18,7 +18,7 @@ class DialEntry:
     """One of them.
 
     name   of a hold `40/centre`, else the path;  path  in the job file;  key  its last step
-    step   centre, and_centre, square, through, fit, bought, bought-face or machine;  on  what the dial runs on
+    step   centre, and_centre, square, trued, through, fit, sets, bought, bought-face or machine;  on  what the dial runs on
     planned  what the entry says now: measured, planned, or the typical reading of its device [mm]
     """
 
@@ -40,7 +40,8 @@ def dial_entries(scopes: Sequence[Scope]) -> Iterator[DialEntry]:
         if isinstance(scope.node, HoldEntry):
             yield from _of_hold(scope, scope.node)
         elif isinstance(scope.node, Join):
-            yield from _made(f"{scope.path}.fit_error", scope.op, "fit", _own(scope.node.outer), scope.node.fit_error)
+            step, on = ("fit", _own(scope.node.outer)) if scope.node.trued is None else ("sets", scope.node.trued.on)
+            yield from _made(f"{scope.path}.fit_error", scope.op, step, on, scope.node.fit_error)
     for scope in scopes:
         if isinstance(scope.node, Part):
             yield from _as_bought(scope, scope.node)

@@ -67,11 +67,27 @@ def facts_of(floor: Floor, scope: Scope, name: str) -> Fact:
             return None
         _, machine = machine_of(floor.loaded, setup)
         return machine.kind if machine is not None else UnknownFact(f"{path}.machine")
+    if name == "setup.follows_heat":
+        return _follows_heat(floor, setup)
     if name == "head.tilted":
         return setup.head is not None and setup.head.tilt != 0.0
     if name == "divide.by":
         return setup.divide.by if setup.divide is not None else None
     return _joint_fact(floor, setup, setup.join, name) if setup.join is not None else None
+
+
+def _follows_heat(floor: Floor, setup: Setup) -> Fact:
+    """Whether the setup before this one, in the order of the job file, joined hot the part that this one holds or cuts."""
+    before = floor.loaded.job.setups[: floor.loaded.job.setups.index(setup)]
+    join = before[-1].join if before else None
+    if join is None or setup.join is not None:
+        return False
+    joined = {floor.loaded.ref(text).part for text in (join.outer, join.inner)}
+    own = {floor.part_of.get(setup.op, ""), setup.part or ""}
+    if not joined & own:
+        return False
+    hot = _heat_fact(floor, join, "heat.hot", f"setups.{before[-1].op}.join.heat")
+    return hot if hot is not None else False
 
 
 def _joint_fact(floor: Floor, setup: Setup, join: Join, name: str) -> Fact:
@@ -85,6 +101,10 @@ def _joint_fact(floor: Floor, setup: Setup, join: Join, name: str) -> Fact:
             return _may_trap(floor, join)
         case "join.may_trap":
             return _may_trap(floor, join) or _hollow(floor, floor.loaded.ref(join.inner).part)
+        case "join.has_stop":
+            return join.stop is not None
+        case "shaft.hollow":
+            return _hollow(floor, floor.loaded.ref(join.inner).part)
         case "hub.porous":
             part = floor.loaded.ref(join.outer).part
             found = porous(floor.loaded.job.parts[part])

@@ -33,6 +33,10 @@ ROW_STEPS = (0.1, 0.2, 0.25, 0.5, 1.0, 2.0, 5.0, 10.0)
 WAYS = {"swung": "swung", "turned-over": "turned over"}
 
 
+LOOKED_AT_ONLY = {"form_error", "magnification"}
+"""Entries of `grinding` that say what the insert has to be and how it is looked at, not how it is ground."""
+
+
 @record
 class Drawn:
     """The profile as plain numbers: heights above the tip and half widths of either flank [mm]."""
@@ -52,7 +56,7 @@ def wide_gap(gap: Sections, made_for: Cut, kind: str, cut: WheelCut) -> Sections
 
     if cut.cutter.width is None:
         return gap
-    wanted, height = middle(cut.cutter.width), width_height(cut)
+    wanted, height = middle(cut.cutter.width), cut.width_height
     by, made = 0.0, profile(gap, made_for, kind)
     if not 0.0 <= height <= made.heights[-1]:
         return Open((f"{cut.cutter_path}.width_at",), f"the profile ends {made.heights[-1]:.3f} mm above the tip")
@@ -74,11 +78,6 @@ def profile(gap: Sections, made_for: Cut, kind: str) -> Insert:
     from setupcheck.worm.gap_insert import envelope_insert, mid_plane_insert
 
     return (envelope_insert if kind == "envelope" else mid_plane_insert)(gap, made_for)
-
-
-def width_height(cut: WheelCut) -> float:
-    """Height above the tip at which the job states the insert's width [mm]; pitch height where it says none."""
-    return cut.cutter.width_at if cut.cutter.width_at is not None else cut.pitch_height
 
 
 def tip_width(profile: Insert) -> float:
@@ -177,10 +176,12 @@ def drawn(profile: Insert) -> Drawn:
 def ground(asked: str, cut: WheelCut) -> Grinding | None:
     """How the job says that the insert is ground; None where it says nothing of it. Source: the job file.
 
-    A form error alone plans no grinding: a measured insert is held against it.
+    A form error alone plans no grinding, nor does how it is looked at: a measured insert is held against it.
     """
     told = cut.cutter.grinding
-    return None if told is None or told.model_fields_set == {"form_error"} else told
+    if told is None or (told.model_fields_set and told.model_fields_set <= LOOKED_AT_ONLY):
+        return None
+    return told
 
 
 def form_error(asked: str, cut: WheelCut) -> float | Open | None:
@@ -350,14 +351,6 @@ def width_tolerance(cut: WheelCut) -> float | Open | None:
     return 0.5 * (given.upper - given.lower)
 
 
-@in_range
-def scale(form_error: float) -> str:
-    """Smallest usual enlargement at which a drawing laid over shows the form error as two lines. Source: worm.overlay."""
-    from setupcheck.worm.overlay import scale_for
-
-    return f"{scale_for(form_error):g}:1"
-
-
 def _row(name: str, unit: str, digits: int, of: object, inputs: dict[str, str], says: str) -> Quantity:
     return Quantity(f"insert.{name}", "cut", unit, digits, of, inputs, says)  # type: ignore[arg-type]
 
@@ -429,5 +422,4 @@ INSERTS = (
     _row("taper", "um", 1, taper, _OFF, "what the stop turns a flank by, tip to top"),
     _row("lean", "arcmin", 1, lean, _OFF, "lean of the insert by the stop"),
     _row("width_tolerance", "um", 1, width_tolerance, _CUT, "what the insert's width may be off"),
-    _row("scale", "", 0, scale, _of("form_error"), "enlargement that shows the form error"),
 )

@@ -5,6 +5,7 @@ from __future__ import annotations
 import math
 from dataclasses import replace
 
+from setupcheck.jobfile.asked import Require
 from setupcheck.jobfile.setups import Join
 from setupcheck.physics.carrying import time_to_close
 from setupcheck.physics.heating import (
@@ -212,6 +213,42 @@ def gap_at_shoulder(join: Join, pair: Pair, most: float) -> float | None:
     return shoulder_gap(most, diameter=pair.diameter, grip_distance=length)
 
 
+def gap_uncounted(floor: Floor, join: Join, gap: float) -> float | None:
+    """The same gap where no requirement along the axis looks across the joint [mm]; None where one does and the sum has it.
+
+    Such a requirement is a length from one of both parts to the other, or the mid-plane of the one against a worm that the other
+    carries.  Source: the job file; the ledger counts the gap there, or lets it cancel.
+    """
+    both = {floor.loaded.ref(text).part for text in (join.outer, join.inner)}
+    return None if any(_parts_along(floor, r) >= both for r in floor.loaded.job.require) else gap
+
+
+def _parts_along(floor: Floor, require: Require) -> set[str]:
+    """The parts between which a requirement counts along the axis; none for every other requirement."""
+    job = floor.loaded.job
+    if require.what == "length":
+        ends: tuple[str | None, ...] = (require.of, require.about)
+    elif require.what == "mid-plane":
+        worm = job.place.worm_axis if job.place is not None else None
+        ends = (
+            require.of or (job.mesh.wheel if job.mesh is not None else None),
+            worm.from_ if worm is not None else None,
+        )
+    else:
+        return set()
+    return {floor.loaded.ref(end).part for end in ends if end}
+
+
+def gap_advice(floor: Floor, join: Join, gap: float, op: int) -> str:
+    """What keeps the hub at its shoulder, with the entry to write. Source: joining.gap_after_cooling."""
+    end = join.stop.against if join.stop is not None and join.stop.against is not None else "the shoulder"
+    return (
+        f"Cool the hub's end at {end} first, with air and never with water, held against it and followed up by a nut or clamp "
+        f"until it bites; then write grips_first: shoulder-end (setups.{op}.join). Or face what counts after the joint, and "
+        f"require the length or the mid-plane that the {floor.size(gap)} would move."
+    )
+
+
 _HERE = {"floor": "route.floor", "join": ":"}
 _PAIR = {"pair": "fit.pair"}
 _NEEDED, _SHAFT = {"needed": "heat.needed"}, {"shaft_at": "heat.shaft_at"}
@@ -292,5 +329,23 @@ HEAT = (
         gap_at_shoulder,
         {"join": ":", **_PAIR, "most": "fit.interference_most"},
         "largest gap at the shoulder after cooling",
+    ),
+    Quantity(
+        "heat.gap_uncounted",
+        "join",
+        "um",
+        1,
+        gap_uncounted,
+        {**_HERE, "gap": "heat.shoulder_gap"},
+        "gap at the shoulder that no required length counts",
+    ),
+    Quantity(
+        "heat.gap_advice",
+        "join",
+        "",
+        0,
+        gap_advice,
+        {**_HERE, "gap": "heat.gap_uncounted", "op": "@op"},
+        "what keeps the hub at its shoulder, in words",
     ),
 )

@@ -2,12 +2,19 @@
 
 from __future__ import annotations
 
+import math
+
 from setupcheck.jobfile.worm import Mesh
+from setupcheck.notation import show
 from setupcheck.quantities.book import Open, Quantity
+from setupcheck.quantities.cutter_shape import USUAL_FILM
 from setupcheck.quantities.drive import middle
 from setupcheck.quantities.judged import Result
 from setupcheck.quantities.shop import Floor
 from setupcheck.quantities.worm_sizes import settled, sizes, toothing
+
+CONTACTS = ("contact-area", "contact-length")
+"""Requirements that are judged by blue."""
 
 
 def circle_miss(floor: Floor) -> float | Open | None:
@@ -66,6 +73,25 @@ def least_backlash(result: Result | None) -> float | None:
     return result.combined.worst.low
 
 
+def film(floor: Floor, mesh: Mesh) -> float | None:
+    """Thickest film of blue that a mark or a requirement of contact is told under [mm]; None where none is stated.
+
+    Source: the job file.
+    """
+    asked = (r.film for r in floor.loaded.job.require if r.what in CONTACTS)
+    told = (mesh.mark.film if mesh.mark is not None else None, *asked)
+    return max((f for f in told if f is not None), default=None)
+
+
+def film_advice(film: float) -> str:
+    """How much wider the job's film marks than the usual one, in words. Source: share of a flank as the root of the film."""
+    wider = math.sqrt(film / USUAL_FILM)
+    return (
+        f"Wipe the blue out to a haze of some {show(USUAL_FILM, 'um', 0)} and write that film: {show(film, 'um', 1)} marks "
+        f"about {wider:.1f} times as wide on any flank, so a share asked under it is to be divided by that."
+    )
+
+
 _HERE = {"floor": "route.floor", "mesh": ":"}
 
 MESHING = (
@@ -89,6 +115,16 @@ MESHING = (
         {"result": "settled stack.combined"},
         "lowest backlash of the worst case",
         {"result": None},
+    ),
+    Quantity("mesh.film", "mesh", "um", 1, film, _HERE, "film of blue that contact is judged under"),
+    Quantity(
+        "mesh.film_advice",
+        "mesh",
+        "",
+        0,
+        film_advice,
+        {"film": "mesh.film"},
+        "what the film widens, in words",
     ),
     Quantity("mesh.backlash_asked", "mesh", "", 0, backlash_asked, _HERE, "whether a backlash is required"),
 )

@@ -151,8 +151,13 @@ def _rz(given: Roughness) -> float:
     return given.height * (RZ_PER_RA if given.kind == "Ra" else 1.0)
 
 
-def service(join: Join, op: int) -> tuple[Warmth, Warmth] | Open:
-    """Coldest and warmest state the joint works in, hub and shaft [degC]. Source: the job file."""
+def service(join: Join, op: int) -> tuple[Warmth, Warmth] | Open | None:
+    """Coldest and warmest state the joint works in, hub and shaft [degC]; None of a joint that no interference holds.
+
+    Source: the job file.
+    """
+    if join.by not in FITTED and join.serves_at is None:
+        return None
     return join.serves_at if join.serves_at is not None else Open((f"setups.{op}.join.serves_at",))
 
 

@@ -10,7 +10,7 @@ from setupcheck.jobfile.models import Dimension, Flat
 from setupcheck.jobfile.reading import LoadedJob
 from setupcheck.jobfile.setups import Cut, Job, Join, Setup, Spacer, Stop
 from setupcheck.notation import show
-from setupcheck.quantities import backlash_read
+from setupcheck.quantities import backlash_read, eccentric
 from setupcheck.quantities.book import Open, OutOfRange, Quantity
 from setupcheck.quantities.finished import finished, to_come
 from setupcheck.quantities.gates import origins, reaches
@@ -62,15 +62,21 @@ def adjusters(floor: Floor) -> tuple[Adjuster, ...] | None:
 
 
 def _of_the_housing(floor: Floor) -> Iterator[Adjuster]:
-    """An eccentric that sets the centre distance: it stays open to the last. At most by its throw, less beside dead centre."""
+    """An eccentric that sets the centre distance: it stays open to the last. By its throw where nobody says how it stands."""
     loaded, mesh = floor.loaded, floor.loaded.job.mesh
     if mesh is None or mesh.eccentric is None or not isinstance(mesh.centre_distance, Dimension):
         return
     wider = backlash_read.apart(floor, TRIAL)  # what was read moves with the axes as well
     apart = mesh.model_copy(update={"centre_distance": _longer(mesh.centre_distance), "backlash_read": wider})
     moved = _walked(loaded, loaded.job.model_copy(update={"mesh": apart}))
-    most = show(mesh.eccentric, *(("in", 4) if loaded.job.units == "in" else ("mm", 3)))
-    yield Adjuster(0, f"the eccentric of the housing, by {most} of centre distance at most", "mesh.eccentric", moved)
+    how = "by {most} of centre distance at most"
+    told = {"most": mesh.eccentric}
+    if mesh.eccentric_at is not None:
+        closes = eccentric.left(mesh.eccentric, mesh.eccentric_at)
+        told = {"closes": closes, "opens": 2.0 * mesh.eccentric - closes}
+        how = "which can still close {closes} of centre distance and open {opens}"
+    said = {key: show(value, *(("in", 4) if loaded.job.units == "in" else ("mm", 3))) for key, value in told.items()}
+    yield Adjuster(0, f"the eccentric of the housing, {how.format(**said)}", "mesh.eccentric", moved)
 
 
 def _walked(loaded: LoadedJob, job: Job) -> Floor | None:

@@ -28,6 +28,7 @@ from setupcheck.quantities.dividing import divided, table_turn
 from setupcheck.quantities.holding import Held, held_placing
 from setupcheck.quantities.joining import gap_after_cooling
 from setupcheck.quantities.shop import Body, Floor, outline, tooth_pattern, unknown_surface
+from setupcheck.quantities.truing import not_stopped, offset_of_a_trued_part
 
 
 def walk(loaded: LoadedJob) -> Floor:
@@ -130,7 +131,7 @@ def _cut(floor: Floor, held: Held, placing: Placing, name: str, cut: Cut) -> Non
         start = floor.sense(ref.part) * fresh.start + (floor.mark(ref.part) or 0.0)
         fresh = replace(fresh, start=start)
         _, machine = machine_of(loaded, setup)
-        on_table = node.kind in ("holes", "slot") and machine is not None and machine.kind == "rotary-table"
+        on_table = node.kind in ("holes", "slot", "lines") and machine is not None and machine.kind == "rotary-table"
         pattern = divided(
             fresh,
             setup.divide,
@@ -140,7 +141,7 @@ def _cut(floor: Floor, held: Held, placing: Placing, name: str, cut: Cut) -> Non
             turn=placing.sg,
             worm_ratio=machine.worm_ratio if machine is not None else None,
             on_table=on_table,
-            holes=node.kind in ("holes", "slot"),
+            holes=node.kind in ("holes", "slot", "lines"),
         )
         target = replace(target, pattern=pattern)
         turn = table_turn(cut, op=op, name=name, radius=fresh.radius, on_table=on_table)
@@ -265,9 +266,12 @@ def _join(floor: Floor, setup: Setup, join: Join) -> None:
     middle_z = (low + high) / 2.0  # the parts touch where bore and journal overlap, so the joint turns about its middle
     level = moved(journal, still, lean, still)
     offset = bore.axis_at(middle_z) - (near + far) * 0.5 - level.axis_at(middle_z)
-    axial = Account.of(
-        Cause(f"op {op}: where the joint is stopped", "undetermined", op, missing=f"setups.{op}.join.stop")
-    ).along(1)
+    if join.trued is not None:
+        offset = offset_of_a_trued_part(
+            floor, op, join, body, other, leaned=lambda state: moved(state, still, lean, still)
+        )
+        floor.truings[op] = bore.axis_at(middle_z) - level.axis_at(middle_z) - offset
+    axial = not_stopped(op)
     if face is not None and shoulder is not None:
         met = moved(shoulder, offset, lean, still)
         radius = (

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from setupcheck.jobfile.models import Deviation
 from setupcheck.jobfile.setups import Centre, Clock, Cut, Setup, Square, Stop
+from setupcheck.jobfile.truing import Trued
 from setupcheck.quantities.book import Scope
 from setupcheck.quantities.readings import readings
 from setupcheck.quantities.requirements import Stack, read_stack
@@ -13,10 +14,10 @@ from setupcheck.record import record
 
 @record
 class HoldEntry:
-    """One entry of a hold: `30/centre`. `error` is its main error entry, None where it has none."""
+    """One entry of a hold: `30/centre`, or a joint that is trued, `30/trued`. `error` is its main error entry, or None."""
 
     step: str
-    entry: Centre | Square | Stop | Clock
+    entry: Centre | Square | Stop | Clock | Trued
 
     @property
     def key(self) -> str:
@@ -70,6 +71,11 @@ def _setup_scopes(floor: Floor, setup: Setup, whole: Scope) -> list[Scope]:
     found = [here]
     if setup.join is not None:
         found.append(Scope("join", str(op), setup.join, f"{path}.join", op, line(f"{path}.join"), (here,)))
+        if setup.join.trued is not None:
+            where = f"{path}.join.trued"
+            found.append(
+                Scope("hold", f"{op}/trued", HoldEntry("trued", setup.join.trued), where, op, line(where), (here,))
+            )
     if setup.hold is not None:
         for step in ("centre", "and_centre", "square", "stop", "clock"):
             entry = getattr(setup.hold, step)

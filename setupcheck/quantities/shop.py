@@ -9,6 +9,7 @@ from setupcheck.jobfile.models import Flat, Pattern, Round, Surface, Throat, Too
 from setupcheck.jobfile.names import Ref
 from setupcheck.jobfile.reading import LoadedJob
 from setupcheck.ledger import route
+from setupcheck.ledger.account import Account
 from setupcheck.ledger.causes import Cause
 from setupcheck.ledger.route import Placing, State
 from setupcheck.notation import show
@@ -58,6 +59,7 @@ class Floor:
     removed: dict[tuple[str, str], int] = field(default_factory=dict)
     frames: dict[str, tuple[int, float]] = field(default_factory=dict)
     marks: dict[str, float | None] = field(default_factory=dict)
+    truings: dict[int, Account] = field(default_factory=dict)
 
     def size(self, mm: float, digits: int = 3) -> str:
         """A size [mm] in the units of the file: so many decimals of a millimetre, of an inch one more and at least three."""

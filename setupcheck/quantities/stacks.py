@@ -100,11 +100,13 @@ def _teeth(floor: Floor, stack: Stack) -> Built | Open:
         if stack.require.on_diameter is None:
             return Open((f"require[{stack.index + 1}].on_diameter",))
         factor = stack.require.on_diameter / (2.0 * pattern.radius)
-    oblique = _oblique(floor, g, r)
+    oblique, seen = _oblique(floor, g, r), _seen_by_heads(floor, stack, flank=flank)
     if isinstance(oblique, Open):
         return oblique
+    if isinstance(seen, Open):
+        return seen
     figure = figures.Tooth(
-        g.offset - r.axis_at(g.z),
+        (g.offset - r.axis_at(g.z)) * seen,
         pattern,
         flank=flank,
         stepwise=what == "single-pitch",
@@ -116,6 +118,23 @@ def _teeth(floor: Floor, stack: Stack) -> Built | Open:
     if isinstance(running, Open):
         return running
     return Built(running, second_order(lean=g.lean - r.lean, lever=abs(g.z - r.z)))
+
+
+def _seen_by_heads(floor: Floor, stack: Stack, *, flank: bool) -> float | Open:
+    """Share of the eccentricity that the mean of the read heads still shows; all of it with one head.
+
+    Source: ledger.heads.
+    """
+    from setupcheck.ledger.heads import share_left
+
+    heads, off, path = stack.require.heads or 1, stack.require.heads_off, f"require[{stack.index + 1}]"
+    if heads > 1 and flank:
+        raise floor.problem(
+            f"{path}.heads", "heads read lines or holes, no teeth", "Drop heads, or ask it of the lines"
+        )
+    if heads > 1 and off is None:
+        return Open((f"{path}.heads_off",))
+    return share_left(heads, off or 0.0)
 
 
 def _angle_of(floor: Floor, g: State) -> str:

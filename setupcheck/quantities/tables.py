@@ -5,6 +5,7 @@ from __future__ import annotations
 from setupcheck.quantities import holds, judged
 from setupcheck.quantities.advice import ADVICE
 from setupcheck.quantities.backlash_compared import AS_READ
+from setupcheck.quantities.beside import BESIDE
 from setupcheck.quantities.book import Quantity
 from setupcheck.quantities.chilling import CHILLING
 from setupcheck.quantities.choosing import CHOOSING
@@ -15,16 +16,20 @@ from setupcheck.quantities.contact_setting import CONTACT_SETTING
 from setupcheck.quantities.cutter_shape import SHAPE
 from setupcheck.quantities.cutting import CUTTING
 from setupcheck.quantities.division import DIVIDE
+from setupcheck.quantities.eccentric import ECCENTRIC
 from setupcheck.quantities.exact_gap import EXACT
 from setupcheck.quantities.growing import GROWING
 from setupcheck.quantities.head_setting import HEAD
 from setupcheck.quantities.heat_checks import HEAT_CHECKS
+from setupcheck.quantities.hobs import HOBS
 from setupcheck.quantities.index_table import INDEX_TABLE
 from setupcheck.quantities.insert_measured import MEASURED
+from setupcheck.quantities.insert_shown import SHOWN
 from setupcheck.quantities.inserts import INSERTS
 from setupcheck.quantities.joining import JOINING
 from setupcheck.quantities.joint_heat import HEAT
 from setupcheck.quantities.joint_states import IN_STATES
+from setupcheck.quantities.keyways import KEYWAYS
 from setupcheck.quantities.marking import MARK
 from setupcheck.quantities.measuring import MEASURE
 from setupcheck.quantities.meshing import MESHING
@@ -40,6 +45,7 @@ from setupcheck.quantities.then_now import THEN_NOW
 from setupcheck.quantities.thread import THREAD
 from setupcheck.quantities.through import THROUGH
 from setupcheck.quantities.tilting import TILT
+from setupcheck.quantities.truing import TRUING
 from setupcheck.quantities.ways import WAYS
 from setupcheck.quantities.wheel_over_balls import OVER_BALLS
 from setupcheck.quantities.wheel_sizes import WHEEL
@@ -278,6 +284,7 @@ TABLES: tuple[Quantity, ...] = (
     *TILT,
     *HEAD,
     *JOINING,
+    *KEYWAYS,
     *STRENGTH,
     *IN_STATES,
     *GROWING,
@@ -289,15 +296,19 @@ TABLES: tuple[Quantity, ...] = (
     *OPENING,
     *HEAT_CHECKS,
     *THROUGH,
+    *BESIDE,
     *CUTTING,
     *SHAPE,
+    *HOBS,
     *EXACT,
     *CONTACT,
     *CONTACT_SETTING,
     *CONTACT_ADVICE,
     *INSERTS,
+    *SHOWN,
     *MEASURED,
     *MESHING,
+    *ECCENTRIC,
     *MARK,
     *WORM,
     *THREAD,
@@ -312,4 +323,5 @@ TABLES: tuple[Quantity, ...] = (
     *PROGRESS,
     *PROVE,
     *OPPOSITE,
+    *TRUING,
 )

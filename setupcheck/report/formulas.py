@@ -42,7 +42,8 @@ FORMULAS: dict[str, tuple[str, str]] = {
     ),
     "index-within": (
         "± half of the index range: (e / cos(pressure angle) + half of what dividing adds over the turn) / pitch radius; with "
-        "the exact gap + half of its transmission error, and of what the setting of the cutter adds to it",
+        "the exact gap + half of its transmission error, and of what the setting of the cutter adds to it; of the mean of "
+        "several heads e times 2 sin(heads_off / 2)",
         FLANK,
     ),
     "on-workpiece": (

@@ -24,6 +24,7 @@ _READINGS = {
     "and_centre": "run-out in the second plane on {}",
     "through": "run-out of {}",
     "fit": "run-out of {} on its seat",
+    "sets": "run-out that the joint adds to {} as it sets",
     "bought": "{}, run-out as bought",
     "bought-face": "{}, face run-out as bought",
     "machine": "{}, run-out of its axis",

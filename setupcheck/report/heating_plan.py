@@ -35,6 +35,7 @@ STEPS: tuple[tuple[str, ...], ...] = (
         "Over the shaft there are {heat.window} until it may bite, while nothing touches.",
         "The tightest pair bites at {heat.bites_at}.",
     ),
+    ("What stays in place beside the hub comes to {heat.beside} at the most; it stands {heat.beside_stands}.",),
     (
         "A gap of up to {heat.shoulder_gap} may open at the shoulder as it cools: let that end grip first, or face it after.",
     ),

@@ -36,7 +36,6 @@ NOT_LOOKED_AT: Mapping[str, Mapping[str, str]] = {
         "error_budget": "error budget {said} (held against `contact: exact` only)",
         "mark": "mark of blue ({said})",
         "backlash_read": "backlash as read (of a worm and its wheel only)",
-        "eccentric": "throw of the eccentric {said} (told as still to move, with `done`)",
     },
     "Cutter": {
         "tip_radius": "tip radius {said}",
@@ -130,10 +129,7 @@ class _Looked:
 
 def _looked(loaded: LoadedJob) -> _Looked:
     """Entries that count in this job, though not in every job."""
-    done = ("mesh.eccentric",) if loaded.job.done is not None else ()
-    return _Looked(
-        frozenset((*done, *_of_joints(loaded), *_of_the_wheel(loaded), *_of_heads(loaded), *_of_limits(loaded)))
-    )
+    return _Looked(frozenset((*_of_joints(loaded), *_of_the_wheel(loaded), *_of_heads(loaded), *_of_limits(loaded))))
 
 
 _OF_A_FIT = ("joint", "friction", "smoothing", "must_carry", "serves_at", "growth_at", "pairs")
@@ -170,7 +166,11 @@ def _of_the_wheel(loaded: LoadedJob) -> Iterator[str]:
         for name, cut in setup.cut.items():
             ref = loaded.ref(name, setup.part)
             kind = job.cutters[cut.cutter].kind if cut.cutter is not None else ""
-            if (ref.part, ref.surface) != (wheel.part, wheel.surface) or kind != "single-point":
+            if (ref.part, ref.surface) != (wheel.part, wheel.surface):
+                continue
+            if kind == "hob":
+                yield f"cutters.{cut.cutter}.diameter"
+            if kind != "single-point":
                 continue
             path = f"setups.{setup.op}.cut.{name}"
             yield from (f"{path}.depth", f"{path}.depth_from", "worm.profile", "worm.thread_thickness", "mesh.mark")

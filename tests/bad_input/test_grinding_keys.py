@@ -29,6 +29,11 @@ AT = "cutters.fly.grinding"
         ("{step: 0 um}", f"{AT}.step | '0 um' cannot be ground. Write what the grinder can do, as in 1 um"),
         ("{wheel_radius: -5 mm}", f"{AT}.wheel_radius | '-5 mm' is not a size. Write a length above zero"),
         ("{way: turned}", f"{AT}.way | 'turned' is not known here. Did you mean turned-over?"),
+        (
+            "{magnification: 2000}",
+            f"{AT}.magnification | 2000 is no magnification. Write how many times larger the insert is shown, as in 20",
+        ),
+        ("{magnification: 20 mm}", f"{AT}.magnification | '20 mm' is a length, not a number. Write a number, as in 72"),
         ("{wheel: 5 mm}", f"{AT}.wheel | 'wheel' is not a key of this entry. Did you mean wheel_radius?"),
     ],
 )

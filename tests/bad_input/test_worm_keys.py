@@ -161,3 +161,25 @@ def test_a_key_that_cannot_be_meant_is_refused_at_its_place(old: str, new: str, 
 )
 def test_a_key_that_can_be_meant_is_read(old: str, new: str) -> None:
     assert read_job_text(spoilt(old, new, WHEEL), "job.yaml")
+
+
+@pytest.mark.parametrize(
+    ("at", "expected"),
+    [
+        (
+            "200 deg",
+            "mesh.eccentric_at | '200 deg' is beyond half a turn. Count from the dead centre at which the worm is farthest from "
+            "the wheel, the shorter way round, as in 75 deg",
+        ),
+        (
+            "-5 deg",
+            "mesh.eccentric_at | '-5 deg' is beyond half a turn. Count from the dead centre at which the worm is farthest from "
+            "the wheel, the shorter way round, as in 75 deg",
+        ),
+        ("60", "mesh.eccentric_at"),
+        ("60 mm", "mesh.eccentric_at"),
+    ],
+)
+def test_an_angle_of_the_eccentric_that_cannot_be_meant_is_refused(at: str, expected: str) -> None:
+    (told,) = says(MESH, f"{MESH} eccentric: 0.5 mm, eccentric_at: {at},")
+    assert told.startswith(expected) and ". " in told

@@ -113,6 +113,48 @@ def many_jobs() -> None:
     print(f" = {many() / (single * 200):5.2f}   aim about 1")
 
 
+def whole_rule_book() -> None:
+    """All rules over one job: read from their files, evaluated with the route and figures they ask for, with the figures at hand.
+
+    Each beside a process that only makes the five imports, so that what a larger book costs is seen.
+    """
+    from setupcheck.flow import load_job, prepare, rules
+    from setupcheck.quantities.facts import UnknownFact, facts_of
+    from setupcheck.rulebook import Unknown, evaluate, load_rulebook
+    from setupcheck.shipped import shipped
+
+    loaded, book_of_rules = load_job(JOB), rules()
+    at_hand = prepare(loaded)
+
+    def over(floor: object, book: object) -> None:
+        def facts(at: object, name: str) -> object:
+            found = facts_of(floor, at, name)  # type: ignore[arg-type]
+            return Unknown(found.path, found.of) if isinstance(found, UnknownFact) else found
+
+        evaluate(book_of_rules, book, facts)  # type: ignore[arg-type]
+
+    def read() -> None:
+        load_rulebook(shipped("rules"), quantities=at_hand[1].quantities)
+
+    imports = process("-c", FIVE)
+    ratio(f"reading the {len(book_of_rules.rules)} rules / the five imports", timed(read), imports, "under 0.3", runs=5)
+    ratio(
+        "evaluating them, with the figures / the five imports",
+        timed(lambda: over(*prepare(loaded))),
+        imports,
+        "under 0.5",
+        runs=5,
+    )
+    over(*at_hand)
+    ratio(
+        "evaluating them, figures at hand / the five imports",
+        timed(lambda: over(*at_hand)),
+        imports,
+        "under 0.1",
+        runs=5,
+    )
+
+
 def worm_contact() -> None:
     """Contact of a worm wheel and the recommended cutter, in multiples of 10 million square roots and arc tangents of numpy.
 
@@ -177,4 +219,5 @@ if __name__ == "__main__":
     )
     random_numbers()
     many_jobs()
+    whole_rule_book()
     worm_contact()

@@ -40,6 +40,9 @@ DEFAULTS = {  # key, with * for a name or an operation -> what is taken where it
     "setups.*.cut.*.each.*": "a scatter along the other direction alone",
     "setups.*.divide.*.once_per_*": "a wave that is not stated is not there, as long as another error of the device is",
     "setups.*.divide.clamp": "clamping shifts nothing",
+    "setups.*.join.trued.runout.measured": "what is not measured yet counts as planned",
+    "setups.*.join.trued": "a part that nobody trues lies anywhere in its play",
+    "setups.*.join.clearance": "a screwed or glued part without play lies as its fit_error says",
     "setups.*.join.fit_error": "an interference fit lets its parts run true to each other",
     "setups.*.join.stop.error": "a face that is pushed home meets the other metal to metal",
 }

@@ -217,6 +217,15 @@ OPERATIONS = {
         {"setup.kind": "join", "join.by": "shrink", "heat.by": None, "heat.hot": False, "heat.cold_by": "dry-ice",
          "hub.may_trap": True, "join.may_trap": True, "heat.deep_cold": True, "shaft.material_family": "steel"},
         ["sealed-cavity-cold", "dry-ice-room", "cold-brittle-steel", "cold-part-and-frost", "shrink-seized-halfway"]),
+    "cutting what was shrunk on just before": (
+        {"setup.kind": "cut", "setup.machine_kind": "lathe", "setup.follows_heat": True,
+         "part.material_family": "steel"},
+        ["gloves-near-spindle", "machined-while-hot"]),
+    "shrinking up to a stop, onto a hollow shaft from the freezer": (
+        {"setup.kind": "join", "join.by": "shrink", "join.has_stop": True, "heat.by": "oven", "heat.cold_by": "freezer",
+         "shaft.hollow": True},
+        ["glove-heat-rating", "hot-part", "hub-held-while-cooling", "chilled-hollow-shaft", "cold-part-and-frost",
+         "shrink-seized-halfway"]),
     "pressing on": ({"setup.kind": "join", "join.by": "press"}, ["press-force", "press-stand-clear"]),
     "pressing a hardened hub on": (
         {"setup.kind": "join", "join.by": "press", "hub.brittle": True, "join.brittle": True},
@@ -291,6 +300,19 @@ PROMISES = re.compile(
 @pytest.mark.parametrize("text", ["It is safe.", "Approved!", "a compliant route", "guaranteed", "certified"])
 def test_a_promise_is_found(text: str) -> None:
     assert PROMISES.search(text)
+
+
+def test_the_closing_line_names_what_the_program_cannot_know() -> None:
+    line = shipped().closing_line
+    for words in (
+        "Planning aid only",
+        "figures given",
+        "cannot see your shop",
+        "manuals",
+        "local law",
+        "qualified person",
+    ):
+        assert words in line
 
 
 def test_no_caution_promises_anything() -> None:

@@ -42,10 +42,11 @@ CLEAR = 2.6
 
 
 def offered(found: Review) -> Iterator[Picture]:
-    """One picture for each requirement that hears of a run-out with a known direction."""
+    """One picture for each requirement that hears of a run-out with a known direction; several read heads lose it."""
     for scope in found.book.instances("stack"):
         result = found.results.get(scope.key)
-        if result is not None and has_directions(result):
+        one_head = (stack_of(scope).require.heads or 1) == 1
+        if result is not None and one_head and has_directions(result):
             n = stack_of(scope).index + 1
             yield Picture(
                 f"high-spots-{n}", f"High spots behind {clean(title_of(scope))}", partial(drawn, found, scope)
@@ -123,9 +124,9 @@ def _near(made: Spots, direction: float) -> str:
     pattern = made.pattern
     if pattern is None or pattern.count < 2:
         return ""
-    back = 0.5 if made.teeth else 0.0  # tooth n stands half a pitch on from gap n
+    back = 0.5 if made.place == "tooth" else 0.0  # tooth n stands half a pitch on from gap n
     pitches = pattern.turn * (direction - pattern.start) * pattern.count / math.tau - back
-    return f", {'tooth' if made.teeth else 'hole'} {round(pitches) % pattern.count + 1}"
+    return f", {made.place} {round(pitches) % pattern.count + 1}"
 
 
 def _rim(made: Spots) -> list[str]:
@@ -154,7 +155,7 @@ def _rim_numbers(made: Spots) -> list[tuple[float, str]]:
     pattern = made.pattern
     if pattern is None or pattern.count < 2:
         return [(math.radians(30.0 * k), f"{30 * k}") for k in range(NUMBERS)]
-    count, back = pattern.count, 0.5 if made.teeth else 0.0
+    count, back = pattern.count, 0.5 if made.place == "tooth" else 0.0
     each = min(count, NUMBERS)
     places = [1 + round(k * count / each) for k in range(each)]
     return [(pattern.angle(n + back), str(n)) for n in places]

@@ -212,7 +212,7 @@ def _as_left(found: Review, setup: Setup, piece: Piece) -> str:
     rough = " rough" if any(s.op == setup.op and s.rough for s in states) else ""
     if piece.kind in ("face", "centre"):
         return f"{name} at {plain(found, piece.low)}{rough}"
-    if piece.kind in ("teeth", "holes", "slot"):
+    if piece.kind in ("teeth", "holes", "slot", "lines"):
         return f"{name}{rough}"
     stated = getattr(surface, "diameter", None)
     drawn_at = stated.value if isinstance(stated, Dimension) else stated

@@ -274,6 +274,11 @@ def _key(found: Review, setup: Setup) -> list[str]:
         lines_.append(f"stop: {short(stop.on, SIZE, 40.0)}{against}{between}")
     else:
         lines_.append("stop: not stated")
+    if join.trued is not None:
+        on, about = (short(name, SIZE, 40.0) for name in (join.trued.on, join.trued.about))
+        lines_.append(f"moved until {on} runs true about {about}, then made fast")
+    if join.heat is not None and join.heat.near is not None:
+        lines_.append(f"stays in place beside the hub: {short(join.heat.near.what, SIZE, 40.0)}")
     if join.grips_first == "shoulder-end":
         lines_.append("the shoulder end grips first: cool or clamp it so that no gap opens")
     if join.grips_first == "anywhere":

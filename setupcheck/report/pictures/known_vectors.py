@@ -38,8 +38,8 @@ class Spots:
 
     arrows  known causes, the largest first;  rest  most that causes without direction add;  limit  the circle to stay within
     counts  value of the requirement for each unit of length;  unit, digits  as shown
-    said    how an arrow counts, in the requirement's own unit;  teeth  whether the places are teeth
-    what    what the arrows are;  high  word for where the sum points;  pattern  of teeth or holes, for the numbers of the rim
+    said    how an arrow counts, in the requirement's own unit;  place  what stands round the rim: tooth, hole, line
+    what    what the arrows are;  high  word for where the sum points;  pattern  of the places numbered on the rim
     """
 
     title: str
@@ -52,7 +52,7 @@ class Spots:
     what: str
     high: str
     pattern: Pattern | None
-    teeth: bool
+    place: str
     said: str
 
     @property
@@ -137,13 +137,13 @@ def spots(found: Review, scope: Scope) -> Spots:
     unit, digits = ("arcsec", 1) if angle else ((INCH["um"], 2) if found.book.inches else ("um", 1))
     pattern = state.pattern if state is not None else None
     title = f"High spots behind {title_of(scope)}"
-    teeth = state is not None and state.kind == "teeth"
+    place = {"teeth": "tooth", "lines": "line"}.get(state.kind if state is not None else "", "hole")
     said = ""
     if what == "eccentricity" and not angle:
         base, places = unit_of(found.book, scope)
         one = 10.0 / FACTOR[unit] if unit == "um" else 1.0 / FACTOR[unit]
         said = f"{show(one, unit, 0)} off axis count {show(one * counts, base, places)} in {stack.require.what}"
-    return Spots(title, arrows, rest, limit, counts, unit, digits, what, high, pattern, teeth, said)
+    return Spots(title, arrows, rest, limit, counts, unit, digits, what, high, pattern, place, said)
 
 
 def _sense(asked: str, state: State | None) -> tuple[float, str]:
@@ -161,7 +161,8 @@ def _sense(asked: str, state: State | None) -> tuple[float, str]:
     if asked == "mid-plane":
         return 1.0, "the ring leans towards"
     if state is not None and state.pattern is not None:
-        return 1.0, "the teeth are high at" if state.kind == "teeth" else "the circle of holes is off towards"
+        circle = "the circle of lines" if state.kind == "lines" else "the circle of holes"
+        return 1.0, "the teeth are high at" if state.kind == "teeth" else f"{circle} is off towards"
     return 1.0, "it is high at"
 
 

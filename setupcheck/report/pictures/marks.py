@@ -121,6 +121,8 @@ def spelled(found: Review, part: str, name: str, most: float, size: float) -> st
         case "holes":
             each = f"{surface.count} × Ø{plain(found, surface.diameter)}" if surface.diameter else f"{surface.count}"
             told = f"{each} on Ø{plain(found, surface.on_circle)}"
+        case "lines":
+            told = f"{surface.count} lines on Ø{plain(found, surface.on_circle)}"
         case "slot":
             each = f"{plain(found, surface.width)} wide, " if surface.width else ""
             told = f"{each}on Ø{plain(found, surface.on_circle)}"

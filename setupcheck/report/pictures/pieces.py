@@ -138,7 +138,7 @@ def _piece(found: Review, part: str, name: str, surface: Surface, op: int | None
 
 def _left(found: Review, piece: Piece, state: State) -> Piece:
     """The piece as an operation left it: its size and place then, in the part's own heights."""
-    if state.op is None or piece.kind in ("teeth", "holes", "slot"):
+    if state.op is None or piece.kind in ("teeth", "holes", "slot", "lines"):
         return piece
     sense, shift = found.floor.frames.get(piece.part, (1, 0.0))
     ends = sorted((sense * (state.low - shift), sense * (state.high - shift)))

@@ -70,7 +70,7 @@ LIMIT_WIDTH, DRAW = 0.7, 0.18
 class Planned:
     """A ring as planned; arcs on its circle [mm].
 
-    kind    gap or hole, for its numbers;  worst  range of the worst case, None where open;  limit  of that range, None without
+    kind    gap, hole or line;  worst  range of the worst case, None where open;  limit  of that range, None without
     low, high  of each place what SHARE of the draws stay within;  one  a draw whose range is the likely one, and that range
     missing what to fill;  gaps  what the gaps add within their pitch, which the worst case counts [mm]
     """
@@ -130,8 +130,9 @@ def planned(found: Review, scope: Scope, name: str) -> Planned:
 
     stack, ref = stack_of(scope), found.loaded.ref(name)
     node = found.loaded.job.parts[ref.part].surfaces[ref.surface]
-    kind, circle = ("gap" if node.kind == "teeth" else "hole"), getattr(node, "on_circle", None) or 0.0
-    title = f"Cumulative pitch of {name}, {_count(found, name)} {'teeth' if kind == 'gap' else 'holes'}"
+    kind = {"teeth": "gap", "lines": "line"}.get(node.kind, "hole")
+    circle = getattr(node, "on_circle", None) or 0.0
+    title = f"Cumulative pitch of {name}, {_count(found, name)} {'teeth' if kind == 'gap' else f'{kind}s'}"
     empty = Planned(name, kind, _count(found, name), circle / 2.0, None, None, (), (), (), 0.0, (), 0.0, title)
     built = found.book.get("stack.built", scope)
     if not isinstance(built, Known) or not isinstance(built.value, Built):
@@ -307,7 +308,8 @@ def _field(plan: Planned, over: Scale, up: Scale, unit: str) -> list[str]:
         parts += upright(Scale(up.low * angle, up.high * angle, BOTTOM, TOP), RIGHT, 8, right=True)
         parts.append(words((SHEET - EDGE, TOP - 2.5), "arcsec", size=SIZE, anchor="end"))
     middle = (LEFT + RIGHT) / 2.0
-    parts.append(words((middle, BOTTOM + 9.0), f"number of the {plan.kind}, as cut", size=SIZE, anchor="middle"))
+    told_as = "number of the line" if plan.kind == "line" else f"number of the {plan.kind}, as cut"
+    parts.append(words((middle, BOTTOM + 9.0), told_as, size=SIZE, anchor="middle"))
     return parts
 
 

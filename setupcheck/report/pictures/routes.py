@@ -96,6 +96,8 @@ def _row(found: Review, route: Route, setup: Setup, at: int) -> Row:
         if setup.join.stop is not None:
             pairs += [(setup.join.stop.on, "stop")]
             pairs += [(setup.join.stop.against, "stop")] if setup.join.stop.against else []
+        if setup.join.trued is not None:
+            pairs += [(setup.join.trued.on, "trued"), (setup.join.trued.about, "trued")]
         for name, role in pairs:
             _hang(route, row, loaded.ref(name), role)
         return row
@@ -239,5 +241,6 @@ def holding(route: Route, at: int) -> int:
 def _axis(row: Row) -> list[Node]:
     """The surfaces that say where a row's axis stands."""
     if row.join:
-        return [node for node, roles in row.held.items() if "outer" in roles or "inner" in roles]
+        trued = [node for node, roles in row.held.items() if "trued" in roles]
+        return trued or [node for node, roles in row.held.items() if "outer" in roles or "inner" in roles]
     return [node for node, roles in row.held.items() if any(role not in AXIAL for role in roles)]

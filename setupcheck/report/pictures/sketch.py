@@ -262,7 +262,7 @@ def _cone(piece: Piece, solid: Solid) -> list[list[Point]]:
 
 def pitch_line(piece: Piece, view: View) -> list[list[Point]]:
     """Centre lines of teeth, holes and slots, as heights and radii; at least so long that the dashes show."""
-    if not piece.radius or piece.kind not in ("teeth", "holes", "slot"):
+    if not piece.radius or piece.kind not in ("teeth", "holes", "slot", "lines"):
         return []
     more = max(2.0, 6.0 - view.along * (piece.high - piece.low) / 2.0) / view.along
     return [[(piece.low - more, piece.radius), (piece.high + more, piece.radius)]]

@@ -180,7 +180,12 @@ class Boxes:
             yield self.plain(f"{path}.heat.shaft", "shaft as read", self.show.heat(join.heat.shaft), "degC")
         if join.heat is not None and join.heat.carry is not None:
             yield self.plain(f"{path}.heat.carry", "seconds from there to the joint", f"{join.heat.carry:g} s", "s")
-        yield self.reading(f"{path}.fit_error", f"run-out of {join.outer} on {join.inner}, cold", join.fit_error)
+        if join.trued is None:
+            yield self.reading(f"{path}.fit_error", f"run-out of {join.outer} on {join.inner}, cold", join.fit_error)
+            return
+        on, about = join.trued.on, join.trued.about
+        yield self.reading(f"{path}.trued.runout", f"run-out of {on} about {about}, trued", join.trued.runout)
+        yield self.reading(f"{path}.fit_error", f"what it has moved on {on} once the joint is fast", join.fit_error)
 
     # -- before the first and after the last setup -----------------------------------------------------------------------
 

@@ -70,4 +70,7 @@ def _joined(show: Showing, setup: Setup) -> Iterator[str]:
         if join.heat.gauge is not None:
             yield f"Gauge of {show.length(join.heat.gauge)} enters the hot bore before the hub is lifted"
         yield "The way from heat or cold to the joint rehearsed cold, nothing in it, hands protected"
-    yield "Cold again: run-out and the gap at the shoulder read"
+    if join.trued is not None:
+        yield f"{paper(join.trued.on, 40)} trued while the joint is loose, and read again once it is fast"
+    else:
+        yield "Cold again: run-out and the gap at the shoulder read"

@@ -308,6 +308,8 @@ def _datum(found: Review, key: str) -> str:
     datum = found.floor.datums.get(key)
     if datum is None:
         return "state not known"
+    if datum.state == "made" and datum.made_at is None:
+        return "as bought"
     return DATUM.get(datum.state, datum.state).format(datum.made_at)
 
 

@@ -198,6 +198,9 @@ class Words:
             lines += self._heat(join)
         if join.mounted_at is not None:
             lines.append(Said("Mounted", f"its mark at {self.show.small_angle(join.mounted_at)} of the other's mark"))
+        if join.trued is not None:
+            turns = f"{paper(join.trued.on, 60)} runs true about {paper(join.trued.about, 60)}"
+            lines.append(Said("Trued", f"moved until {turns}, then made fast"))
         if join.clearance is not None:
             low, high = join.clearance
             lines.append(Said("Play", f"{self.show.fine(low)} to {self.show.fine(high)}"))
@@ -216,3 +219,6 @@ class Words:
             yield Said("Carried", f"{heat.carry:g} s to the joint")
         if heat.gauge is not None:
             yield Said("Gauge", f"{self.show.length(heat.gauge)}, tried in the hot bore")
+        if heat.near is not None:
+            stands = f", {heat.near.stands:g} degC at most" if heat.near.stands is not None else ""
+            yield Said("Beside it", f"{paper(heat.near.what, 40)} in place{stands}")

@@ -19,6 +19,7 @@ HEATED = {
     "bearing-ring-seat": ["heating-30"],
     "coupling-hub": ["heating-50"],
     "rotator-worm-wheel": ["heating-70"],
+    "spindle-nose-ring": ["heating-30"],
     "wheel-on-spindle": ["heating-30"],
 }
 

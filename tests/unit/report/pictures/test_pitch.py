@@ -19,6 +19,7 @@ from ....published.division_files import Shop, as_deviations, rows, stations
 from .sheets import HIGH_AT, JOBS, SHIPPED, WHEEL, is_a_clear_picture, judged, named, said
 
 DIVIDED = {
+    "encoder-disc-mount": ["pitch-1"],
     "index-plate": ["pitch-4"],
     "rotator-worm-wheel": ["pitch-1"],
     "spur-gear-on-mandrel": ["pitch-1"],

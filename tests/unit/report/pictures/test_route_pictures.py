@@ -165,6 +165,7 @@ def test_each_datum_of_each_holding_has_its_arrow(job: str) -> None:
         elif setup.join is not None:
             texts = [setup.join.outer, setup.join.inner]
             texts += [setup.join.stop.on, setup.join.stop.against or ""] if setup.join.stop is not None else []
+            texts += [setup.join.trued.on, setup.join.trued.about] if setup.join.trued is not None else []
             refs = [found.loaded.ref(text) for text in texts if text]
         held |= {(setup.op, ref.part, ref.surface) for ref in refs}
     root = ElementTree.fromstring(shown(found)["datums"].draw())
