@@ -19,6 +19,7 @@ from setupcheck.jobfile import (
     properties,
     prove_out,
     setups,
+    touched,
     travel,
     truing,
     worm,
