@@ -112,18 +112,27 @@ def stated_size(found: Review, part: str, name: str) -> str:
     return f"{plain(found, value.value)}{' measured' if value.measured is not None else ''}"
 
 
+def pattern_size(found: Review, part: str, name: str) -> str:
+    """Count, size and circle of teeth, holes or a slot: `72 on Ø108`, `24 × Ø0.25 on Ø4.75`."""
+    surface = found.loaded.job.parts[part].surfaces[name]
+    circle = f"on Ø{plain(found, surface.on_circle)}"
+    match surface.kind:
+        case "holes":
+            each = f" × Ø{plain(found, surface.diameter)}" if surface.diameter else ""
+            return f"{surface.count}{each} {circle}"
+        case "slot":
+            each = f"{plain(found, surface.width)} wide, " if surface.width else ""
+            return f"{each}{circle}"
+        case _:
+            return f"{surface.count} {circle}"
+
+
 def spelled(found: Review, part: str, name: str, most: float, size: float) -> str:
     """Name and size of a surface in shop words, within so much room."""
     surface = found.loaded.job.parts[part].surfaces[name]
     match surface.kind:
-        case "teeth":
-            told = f"{surface.count} on Ø{plain(found, surface.on_circle)}"
-        case "holes":
-            each = f"{surface.count} × Ø{plain(found, surface.diameter)}" if surface.diameter else f"{surface.count}"
-            told = f"{each} on Ø{plain(found, surface.on_circle)}"
-        case "slot":
-            each = f"{plain(found, surface.width)} wide, " if surface.width else ""
-            told = f"{each}on Ø{plain(found, surface.on_circle)}"
+        case "teeth" | "holes" | "slot":
+            told = pattern_size(found, part, name)
         case "throat":
             told = f"Ø{plain(found, surface.diameter)} R{plain(found, surface.radius)}"
         case "face" | "centre":

@@ -11,20 +11,22 @@ from setupcheck.flow import Review
 from setupcheck.jobfile.models import Deviation, Dimension, Part, Round, Toothing
 from setupcheck.jobfile.setups import Cut, Hold, Join, Setup
 from setupcheck.record import record
-from setupcheck.report.sheet.accept import accepted
+from setupcheck.report.sheet.accept import Accept, accepted
 from setupcheck.report.sheet.showing import Showing
 from setupcheck.report.wording import clean
 
+NO_LIMIT = Accept("")
 PLACES = 8
 """Places round a wheel at which backlash is read. Source: common practice."""
 
 
 @record
 class Cell:
-    """One box: what stands behind the row's key (`.measured`), its unit or a word for it."""
+    """One box: what stands behind the row's key (`.measured`), its unit or a word for it; wide where two values go in."""
 
     end: str
     unit: str
+    wide: bool = False
 
 
 @record
@@ -34,7 +36,7 @@ class Row:
     key: str
     says: str
     plan: str
-    accept: str
+    accept: Accept
     line: int
     cells: tuple[Cell, ...]
 
@@ -67,11 +69,11 @@ class Boxes:
         return self._row(key, says, self.show.size(given), cells)
 
     def plain(self, key: str, says: str, plan: str, unit: str) -> Row:
-        """An entry that is one value."""
-        return self._row(key, says, plan, (Cell("", unit),))
+        """An entry that is one value, or a list of two."""
+        return self._row(key, says, plan, (Cell("", unit, wide=unit.startswith("[")),))
 
     def _row(self, key: str, says: str, plan: str, cells: tuple[Cell, ...]) -> Row:
-        return Row(key, clean(says), plan, self.accept.get(key, ""), self.found.loaded.line(key), cells)
+        return Row(key, clean(says), plan, self.accept.get(key, NO_LIMIT), self.found.loaded.line(key), cells)
 
     # -- one setup -----------------------------------------------------------------------------------------------------
 
@@ -160,7 +162,7 @@ class Boxes:
     def _prove_out(self, readings: Mapping[str, float], path: str, surface: object) -> Iterator[Row]:
         count = surface.count if isinstance(surface, Toothing) else 0
         names = list(readings) or [f"gap {n}" for n in _round_the_wheel(count, 4)]
-        cells = tuple(Cell(f".readings.{name}", f"{name}, {self.fine}") for name in names[:PLACES])
+        cells = tuple(Cell(f".readings.{name}", self.fine) for name in names[:PLACES])
         yield self._row(
             path, "dial over the ball in each prove-out gap", "", (*cells, Cell(".uncertainty", f"± {self.fine}"))
         )
@@ -246,7 +248,7 @@ class Boxes:
         )
         if isinstance(wheel, Toothing):
             gaps = _round_the_wheel(wheel.count, PLACES)
-            places = tuple(Cell(f".readings.gap {n}", f"gap {n}, {self.fine}") for n in gaps)
+            places = tuple(Cell(f".readings.gap {n}", self.fine) for n in gaps)
             says = "backlash round the wheel, the number of the gap at the worm; end float included or taken-out"
             more = (
                 Cell(".uncertainty", f"± {self.fine}"),

@@ -21,6 +21,19 @@ OUTSIDE = (
 """What to do when a box falls outside, step by step. Source: common practice."""
 
 
+def sign_off(found: Review) -> tuple[str, ...]:
+    """Points of the whole job at which somebody signs, those that this job has."""
+    setups = found.loaded.job.setups
+    points = (
+        ("After indicating", any(setup.hold is not None for setup in setups)),
+        ("After the first full circle", any(setup.divide is not None for setup in setups)),
+        ("Before heat or cold", any(setup.join is not None and setup.join.heat is not None for setup in setups)),
+        ("Before the last cut", any(setup.cut for setup in setups)),
+        ("Finished, all boxes filled", True),
+    )
+    return tuple(point for point, needed in points if needed)
+
+
 def checks(found: Review, setup: Setup) -> list[str]:
     """Hold points of one setup, in the order of the work."""
     return list(dict.fromkeys(_of(Showing(found), setup)))
@@ -43,7 +56,8 @@ def _of(show: Showing, setup: Setup) -> Iterator[str]:
         if cut.depth_from is not None:
             yield f"Depth of {paper(name, 40)} counted from {paper(cut.depth_from.surface, 40)} as touched, dial at zero"
     if setup.cut and setup.divide is not None:
-        yield "After the first full circle: last gap against the first, before the finishing pass"
+        finishing = ", before the finishing pass" if any(len(cut.passes) > 1 for cut in setup.cut.values()) else ""
+        yield f"After the first full circle: last place against the first{finishing}"
     if setup.join is not None:
         yield from _joined(show, setup)
     yield "Every box of this page is filled, and none lies outside what may be accepted"
@@ -58,6 +72,8 @@ def _held(hold: Hold) -> Iterator[str]:
         yield f"{paper(hold.square.on, 40)} wiped, no chip under it, read on its face"
     if hold.stop is not None:
         yield f"{paper(hold.stop.on, 40)} firmly on the stop"
+    if hold.clock is not None:
+        yield f"Number {hold.clock.number} of {paper(hold.clock.on, 40)} found and the part locked at that angle"
 
 
 def _joined(show: Showing, setup: Setup) -> Iterator[str]:

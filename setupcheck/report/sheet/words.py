@@ -11,6 +11,7 @@ from setupcheck.jobfile.setups import Centre, Cut, Head, Hold, Join, Setup
 from setupcheck.quantities.book import Known, Open, Scope
 from setupcheck.quantities.devices import DEVICES
 from setupcheck.record import record
+from setupcheck.report.pictures.pieces import as_of, refs_cut, size_left
 from setupcheck.report.sheet.showing import Showing, paper
 
 RESTS = {
@@ -89,7 +90,7 @@ class Words:
         by = f", set by {head.by}" if head.by else ""
         lines = [Said("Tilt", f"{self.show.angle(head.tilt)}{known}{by}")]
         if head.leans:
-            lines.append(Said("Leans", head.leans))
+            lines.append(Said("Leans", f"{head.leans}, as drawn below"))
         middle = head.mid_plane
         if middle is not None:
             when = {
@@ -107,20 +108,36 @@ class Words:
         lines = [Said("Divided by", f"{divide.by}{circle}")]
         step = self.found.book.get("divide.table_step", scope)
         if isinstance(step, Known):
-            lines.append(Said("From place to place", str(step.value)))
+            lines.append(Said("From place to place", f"{step.value}; each place in the index table, behind the operations"))
         if divide.order == "spread":
             lines.append(Said("Order", "spread: follow the index table place by place"))
         return lines
 
     def cuts(self, setup: Setup) -> list[Said]:
-        """Each surface with what it leaves, what stock it meets, and how its teeth are cut."""
-        lines = []
-        for name, cut in setup.cut.items():
-            lines.append(Said(paper(name, 40), "; ".join(self._cut(setup, name, cut))))
-        return lines
+        """Each surface with the size it is cut to, what it leaves, what stock it meets, and how its teeth are cut."""
+        sizes = self._sizes(setup)
+        return [
+            Said(paper(name, 40), "; ".join([self._target(cut, sizes.get(name, "")), *self._cut(setup, name, cut)]))
+            for name, cut in setup.cut.items()
+        ]
+
+    def goals(self, setup: Setup) -> list[Said]:
+        """Each surface with the size it is cut to alone, for the route."""
+        sizes = self._sizes(setup)
+        return [Said(paper(name, 40), self._target(cut, sizes.get(name, ""))) for name, cut in setup.cut.items()]
+
+    def _sizes(self, setup: Setup) -> dict[str, str]:
+        """Size or place of each surface as this setup leaves it, by its name in the file."""
+        if setup.op not in self.found.floor.part_of:  # a joining holds no part of its own
+            return {}
+        sizes = {}
+        for name, ref in zip(setup.cut, refs_cut(self.found, setup), strict=True):
+            pieces = as_of(self.found, ref.part, setup.op)
+            sizes[name] = next((size_left(self.found, p) for p in pieces if p.name == ref.surface), "")
+        return sizes
 
     def _cut(self, setup: Setup, name: str, cut: Cut) -> Iterator[str]:
-        yield self._leaves(cut)
+        """What more there is to say of a cut, one thing at a time."""
         scope = next(s for s in self.found.book.instances("cut") if s.key == f"{setup.op}/{name}")
         stock = self.found.book.get("allow.least_stock", scope)
         if isinstance(stock, Known):
@@ -142,9 +159,14 @@ class Words:
         if cut.tool_change_after is not None:
             yield f"tool changed after {cut.tool_change_after} gaps"
 
+    def _target(self, cut: Cut, size: str) -> str:
+        """`Ø48 h6, finished`, `at 20.4, leaves 0.40 mm on the face`; sizes and places in the units of the file."""
+        size = f"at z {size.removeprefix('at ')}" if size.startswith("at ") else size
+        return paper(", ".join(one for one in (size, self._leaves(cut)) if one), 80)
+
     def _leaves(self, cut: Cut) -> str:
-        if cut.to is not None:
-            return f"to {self.show.length(cut.to)}{', rough' if cut.state == 'rough' else ''}"
+        if cut.to is not None:  # the place itself, which stands before it
+            return "rough" if cut.state == "rough" else ""
         for value, word in (
             (cut.leave_on_diameter, "on the diameter"),
             (cut.leave_on_radius, "on the radius"),
@@ -152,7 +174,7 @@ class Words:
         ):
             if value:
                 return f"leaves {self.show.length(value)} {word}{', rough' if cut.state == 'rough' else ''}"
-        return "rough" if cut.state == "rough" else "to its finished size"
+        return "rough" if cut.state == "rough" else "finished"
 
     def cutter(self, name: str, cutter: Cutter | None) -> str:
         """A cutter by its name with what is stated of it."""
