@@ -5,6 +5,7 @@ from __future__ import annotations
 import math
 
 from setupcheck.flow import Review
+from setupcheck.jobfile.models import Pattern, Toothing
 from setupcheck.notation import show
 from setupcheck.record import record
 from setupcheck.report.svg import room
@@ -113,18 +114,16 @@ def stated_size(found: Review, part: str, name: str) -> str:
 
 
 def pattern_size(found: Review, part: str, name: str) -> str:
-    """Count, size and circle of teeth, holes or a slot: `72 on Ø108`, `24 × Ø0.25 on Ø4.75`."""
+    """Count, size and circle of teeth, holes or a slot: `72 on Ø108`, `24 × Ø0.25 on Ø4.75`, `0.25 wide, on Ø5.5`."""
     surface = found.loaded.job.parts[part].surfaces[name]
-    circle = f"on Ø{plain(found, surface.on_circle)}"
-    match surface.kind:
-        case "holes":
-            each = f" × Ø{plain(found, surface.diameter)}" if surface.diameter else ""
-            return f"{surface.count}{each} {circle}"
-        case "slot":
-            each = f"{plain(found, surface.width)} wide, " if surface.width else ""
-            return f"{each}{circle}"
-        case _:
-            return f"{surface.count} {circle}"
+    assert isinstance(surface, Toothing | Pattern)
+    each = ""
+    if isinstance(surface, Pattern) and surface.diameter:
+        each = f" × Ø{plain(found, surface.diameter)}"
+    if surface.kind == "slot":
+        each = f"{plain(found, surface.width)} wide, " if surface.width else ""
+        return f"{each}on Ø{plain(found, surface.on_circle)}"
+    return f"{surface.count}{each} on Ø{plain(found, surface.on_circle)}"
 
 
 def spelled(found: Review, part: str, name: str, most: float, size: float) -> str:

@@ -10,6 +10,7 @@ from setupcheck.report.gates import bands_of, ends_of, is_far, is_idle, lengths_
 from setupcheck.report.sheet.showing import paper
 from setupcheck.report.wording import on_the_dial, title_of
 
+
 @record
 class Accept:
     """What may be accepted of a reading, and the requirement that limits it (empty where none does)."""
@@ -56,6 +57,16 @@ def _length(gate: LengthGate, titles: dict[str, str], *, inches: bool) -> Accept
     if is_far(gate):
         return FREE
     low, high = ends_of(gate, inches=inches)
-    span = f"{low} to {high}" if low and high else f"at least {low}" if low else f"at most {high}"
+    span = _span(low, high) if low and high else f"at least {low}" if low else f"at most {high}"
     by = [titles.get(key, key) for key, end in ((gate.by_low, low), (gate.by_high, high)) if end]
     return Accept(span, " and ".join(dict.fromkeys(by)))
+
+
+def _span(low: str, high: str) -> str:
+    """Both ends with their unit once.
+
+    >>> _span("-20 um", "+16 um"), _span("0.9 mm", "1 in")
+    ('-20 to +16 um', '0.9 mm to 1 in')
+    """
+    number, _, unit = low.rpartition(" ")
+    return f"{number} to {high}" if high.endswith(f" {unit}") else f"{low} to {high}"

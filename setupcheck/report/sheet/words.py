@@ -108,7 +108,9 @@ class Words:
         lines = [Said("Divided by", f"{divide.by}{circle}")]
         step = self.found.book.get("divide.table_step", scope)
         if isinstance(step, Known):
-            lines.append(Said("From place to place", f"{step.value}; each place in the index table, behind the operations"))
+            lines.append(
+                Said("From place to place", f"{step.value}; each place in the index table, behind the operations")
+            )
         if divide.order == "spread":
             lines.append(Said("Order", "spread: follow the index table place by place"))
         return lines
