@@ -10,6 +10,7 @@ from collections.abc import Iterator, Mapping, Sequence
 from setupcheck.flow import Review
 from setupcheck.jobfile.models import Deviation, Dimension, Part, Round, Toothing
 from setupcheck.jobfile.setups import Cut, Hold, Join, Setup
+from setupcheck.quantities.devices import DEVICES
 from setupcheck.record import record
 from setupcheck.report.sheet.accept import Accept, accepted
 from setupcheck.report.sheet.showing import Showing
@@ -107,7 +108,12 @@ class Boxes:
         ):
             if entry is None:
                 continue
-            if entry.runout is not None or entry.clearance is None:
+            for axis in ("x", "y") if DEVICES[entry.by].xy else ():
+                zero = getattr(entry, axis)
+                plan = f"± {self.show.fine(zero)}" if zero is not None else ""
+                says = f"{entry.on} found along {axis.upper()}, known to"
+                yield self.plain(f"{path}.{step}.{axis}", says, plan, f"± {self.fine}")
+            if entry.runout is not None or (entry.clearance is None and not DEVICES[entry.by].xy):
                 yield self.reading(f"{path}.{step}.runout", place.format(entry.on), entry.runout)
             if entry.clearance is not None:
                 plan = f"{self.show.fine(entry.clearance[0])} to {self.show.fine(entry.clearance[1])}"
@@ -148,6 +154,8 @@ class Boxes:
             yield self.size(key, f"diameter of {ref.surface}", surface.diameter)
         if cut.error is not None:
             yield self.reading(f"{path}.error", f"length of {name}, off its plan", cut.error, signed=True)
+        for axis, at in (cut.spindle_to_axis or {}).items():
+            yield self.size(f"{path}.spindle_to_axis.{axis}", f"spindle over the table's axis, {axis.upper()}", at)
         if cut.depth_from is not None:
             touched = cut.depth_from
             key = f"{path}.depth_from"

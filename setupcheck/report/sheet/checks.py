@@ -6,7 +6,7 @@ from collections.abc import Iterator
 
 from setupcheck.flow import Review
 from setupcheck.jobfile.setups import Hold, Setup
-from setupcheck.quantities.devices import DEVICES
+from setupcheck.quantities.devices import DEVICES, Device
 from setupcheck.report.sheet.showing import Showing, paper
 
 OUTSIDE = (
@@ -49,10 +49,14 @@ def _of(show: Showing, setup: Setup) -> Iterator[str]:
         yield f"Head leaned by {show.angle(setup.head.tilt)}{side}, and locked"
         if setup.head.mid_plane is not None and setup.head.mid_plane.found != "no-tilt":
             yield "Cutter's height set, or set again, with the head as it is leaned now"
-    if setup.divide is not None:
+    if setup.divide is not None and setup.divide.by == "x-y":
+        yield "Zero set on the axis, both ways of X and Y tried once against the table of coordinates"
+    elif setup.divide is not None:
         circle = f": circle of {setup.divide.circle} holes" if setup.divide.circle else ""
         yield f"Dividing ready by its index table{circle}; one trial turn round closes on place 1"
     for name, cut in setup.cut.items():
+        if cut.prove_out is not None:
+            yield f"Prove-out gaps of {paper(name, 40)} read and reviewed before going to depth"
         if cut.depth_from is not None:
             yield f"Depth of {paper(name, 40)} counted from {paper(cut.depth_from.surface, 40)} as touched, dial at zero"
     if setup.cut and setup.divide is not None:
@@ -66,14 +70,20 @@ def _of(show: Showing, setup: Setup) -> Iterator[str]:
 def _held(hold: Hold) -> Iterator[str]:
     for entry in (hold.centre, hold.and_centre):
         if entry is not None:
-            gripped = "read with the part gripped as it will be cut" if DEVICES[entry.by].grips else "read and locked"
-            yield f"{paper(entry.on, 40)} {DEVICES[entry.by].words}, {gripped}"
+            yield f"{paper(entry.on, 40)} {DEVICES[entry.by].words}, {_read(DEVICES[entry.by])}"
     if hold.square is not None:
         yield f"{paper(hold.square.on, 40)} wiped, no chip under it, read on its face"
     if hold.stop is not None:
         yield f"{paper(hold.stop.on, 40)} firmly on the stop"
     if hold.clock is not None:
         yield f"Number {hold.clock.number} of {paper(hold.clock.on, 40)} found and the part locked at that angle"
+
+
+def _read(device: Device) -> str:
+    """How a surface in a device is read before the cut."""
+    if device.xy:
+        return "both sides touched along X and along Y"
+    return "read with the part gripped as it will be cut" if device.grips else "read and locked"
 
 
 def _joined(show: Showing, setup: Setup) -> Iterator[str]:

@@ -22,12 +22,12 @@ from setupcheck.report.remedies import remedy_in_words
 from setupcheck.report.sheet.boxes import Boxes, Row
 from setupcheck.report.sheet.checks import checks, sign_off
 from setupcheck.report.sheet.showing import paper
-from setupcheck.report.sheet.words import Said, Words
+from setupcheck.report.sheet.words import ROLE, Said, Words
 from setupcheck.report.text import counts, limits_in_words
 from setupcheck.report.uncomputed import in_lines, uncomputed
 from setupcheck.report.wording import finer, title_of, unit_of
 from setupcheck.report.worked_out import worked_out
-from setupcheck.rulebook.records import CautionLine
+from setupcheck.rulebook.records import CautionLine, Finding
 
 DATUM = {
     "stock": "stock, as the blank brings it",
@@ -248,10 +248,8 @@ def _troubles(found: Review, op: int | None = None) -> list[Trouble]:
     ]
 
 
-def _do(found: Review, finding: object) -> str:
-    from setupcheck.rulebook import Finding
-
-    assert isinstance(finding, Finding)
+def _do(found: Review, finding: Finding) -> str:
+    """What to do about a finding; empty where the rule book knows nothing."""
     if finding.verdict == "open" and finding.missing:
         return f"Fill {', '.join(finding.missing[:4])}"
     if finding.verdict == "waived":
@@ -286,6 +284,7 @@ def _data(found: Review, *, op: bool) -> tuple[Said, ...]:
 
 
 def _asked(found: Review) -> list[str]:
+    """Each requirement with its figure and its limit, in the order of the job."""
     lines = []
     for scope in found.book.instances("stack"):
         result = found.results.get(scope.key)
@@ -298,13 +297,14 @@ def _asked(found: Review) -> list[str]:
 
 
 def _step(found: Review, setup: Setup) -> Step:
+    """One setup as a line of the route."""
     words = Words(found)
     held = []
     if setup.hold is not None:
-        for step in ("centre", "and_centre", "square", "stop", "clock"):
+        for step, role in ROLE.items():
             entry = getattr(setup.hold, step)
             if entry is not None:
-                held.append(Said(_ROLE[step], f"{paper(entry.on, 40)}, {_datum(found, f'{setup.op}/{step}')}"))
+                held.append(Said(role, f"{paper(entry.on, 40)}, {_datum(found, f'{setup.op}/{step}')}"))
     elif setup.keeps is not None:
         held.append(Said("As before", f"the holding of op {setup.keeps}, never opened"))
     if setup.join is not None:
@@ -315,10 +315,8 @@ def _step(found: Review, setup: Setup) -> Step:
     return Step(setup.op, _machine(setup), tuple(held), cuts)
 
 
-_ROLE = {"centre": "Axis", "and_centre": "Second plane", "square": "Lean", "stop": "Length", "clock": "Angle"}
-
-
 def _datum(found: Review, key: str) -> str:
+    """In what state a surface is when it is held on; key  `40/centre`."""
     datum = found.floor.datums.get(key)
     if datum is None:
         return "state not known"

@@ -7,12 +7,17 @@ from collections.abc import Iterator
 from setupcheck.flow import Review
 from setupcheck.jobfile.dividing import Divide
 from setupcheck.jobfile.models import Cutter
+from setupcheck.jobfile.prove_out import ProveOut
 from setupcheck.jobfile.setups import Centre, Cut, Head, Hold, Join, Setup
 from setupcheck.quantities.book import Known, Open, Scope
 from setupcheck.quantities.devices import DEVICES
 from setupcheck.record import record
+from setupcheck.report.pictures.joins import GRIPS_FIRST, LEAN
 from setupcheck.report.pictures.pieces import as_of, refs_cut, size_left
 from setupcheck.report.sheet.showing import Showing, paper
+
+ROLE = {"centre": "Axis", "and_centre": "Second plane", "square": "Lean", "stop": "Length", "clock": "Angle"}
+"""What each step of a hold rules, as it heads a line."""
 
 RESTS = {
     "hanging": "hangs on it",
@@ -41,25 +46,25 @@ class Words:
         """What rules the axis, the lean, the length and the angle."""
         lines = []
         if hold.centre is not None:
-            lines.append(Said("Axis", self._centre(hold.centre)))
+            lines.append(Said(ROLE["centre"], self._centre(hold.centre)))
         if hold.and_centre is not None:
-            lines.append(Said("Second plane", self._centre(hold.and_centre)))
+            lines.append(Said(ROLE["and_centre"], self._centre(hold.and_centre)))
         if hold.square is not None:
             s = hold.square
             by = f" against {paper(s.by, 40)}" if s.by else ""
             read = f", face run-out {self.show.planned(s.face_runout)}" if s.face_runout is not None else ""
             across = f" on {self.show.length(s.across)}" if s.across is not None else ""
             chip = f"; a chip of {self.show.fine(s.chip)} is reckoned with" if s.chip else ""
-            lines.append(Said("Lean", f"{paper(s.on, 40)}{by}{read}{across}{chip}"))
+            lines.append(Said(ROLE["square"], f"{paper(s.on, 40)}{by}{read}{across}{chip}"))
         if hold.stop is not None:
             t = hold.stop
             error = f", {self.show.planned(t.error)}" if t.error is not None else ""
             point = " (a single point)" if t.touches == "point" else ""
-            lines.append(Said("Length", f"{paper(t.on, 40)} on the stop{point}{error}"))
+            lines.append(Said(ROLE["stop"], f"{paper(t.on, 40)} on the stop{point}{error}"))
         if hold.clock is not None:
             c = hold.clock
             error = f", {self.show.planned(c.error)}" if c.error is not None else ""
-            lines.append(Said("Angle", f"number {c.number} of {paper(c.on, 40)}{error}"))
+            lines.append(Said(ROLE["clock"], f"number {c.number} of {paper(c.on, 40)}{error}"))
         return lines
 
     def _centre(self, centre: Centre) -> str:
@@ -108,9 +113,8 @@ class Words:
         lines = [Said("Divided by", f"{divide.by}{circle}")]
         step = self.found.book.get("divide.table_step", scope)
         if isinstance(step, Known):
-            lines.append(
-                Said("From place to place", f"{step.value}; each place in the index table, behind the operations")
-            )
+            table = "the table of coordinates" if divide.by == "x-y" else "the index table"
+            lines.append(Said("From place to place", f"{step.value}; each place in {table}, behind the operations"))
         if divide.order == "spread":
             lines.append(Said("Order", "spread: follow the index table place by place"))
         return lines
@@ -158,8 +162,19 @@ class Words:
             )
             tool = f" with the tool {cut.depth_from.tool}" if cut.depth_from and cut.depth_from.tool else ""
             yield f"depth {self.show.length(cut.depth)}{touched}{tool}"
+        if cut.spindle_to_axis:
+            both = (f"{axis.upper()} {self.show.size(at)}" for axis, at in cut.spindle_to_axis.items())
+            yield f"spindle set over from the table's axis by {', '.join(both)}"
+        if cut.prove_out is not None:
+            yield self._prove_out(cut.prove_out)
         if cut.tool_change_after is not None:
             yield f"tool changed after {cut.tool_change_after} gaps"
+
+    def _prove_out(self, proved: ProveOut) -> str:
+        """The shallow gaps that are cut and read first."""
+        ball = f" of {self.show.length(proved.ball)}" if proved.ball is not None else ""
+        about = f", the part turned about {paper(proved.about, 40)}" if proved.about else ""
+        return f"first prove-out gaps {self.show.length(proved.depth)} deep, read over a ball{ball}{about}"
 
     def _target(self, cut: Cut, size: str) -> str:
         """`Ø48 h6, finished`, `at 20.4, leaves 0.40 mm on the face`; sizes and places in the units of the file."""
@@ -209,15 +224,15 @@ class Words:
         """Two parts put together."""
         lines = [Said("Joined", f"{paper(join.outer, 60)} on {paper(join.inner, 60)}, by {join.by}")]
         if join.square:
-            lines.append(Said("Lean", f"ruled by the {join.square}"))
+            lines.append(Said(ROLE["square"], LEAN[join.square]))
         if join.stop is not None:
             between = "".join(f", {paper(s.name, 40)} of {self.show.size(s.length)} between" for s in join.stop.spacers)
             against = f" against {paper(join.stop.against, 60)}" if join.stop.against else ""
-            lines.append(Said("Length", f"{paper(join.stop.on, 60)}{against}{between}"))
+            lines.append(Said(ROLE["stop"], f"{paper(join.stop.on, 60)}{against}{between}"))
         if join.joint:
             lines.append(Said("Surfaces", join.joint))
         if join.grips_first:
-            lines.append(Said("Grips first", join.grips_first))
+            lines.append(Said("Grips first", GRIPS_FIRST[join.grips_first]))
         if join.heat is not None:
             lines += self._heat(join)
         if join.mounted_at is not None:
