@@ -6,12 +6,13 @@ from collections.abc import Collection, Sequence
 from dataclasses import replace
 
 from setupcheck.flow import Review
-from setupcheck.jobfile.models import Flat, Pattern, Round, Surface, Throat, Toothing
+from setupcheck.jobfile.models import Dimension, Flat, Pattern, Round, Surface, Throat, Toothing
 from setupcheck.jobfile.names import Ref
 from setupcheck.jobfile.setups import Setup
 from setupcheck.ledger.route import State
 from setupcheck.quantities.shop import outline
 from setupcheck.record import record
+from setupcheck.report.pictures.marks import pattern_size, plain, stated_size
 from setupcheck.report.pictures.shape import Piece
 
 DEDENDUM = 1.25
@@ -88,6 +89,22 @@ def holding(found: Review, setup: Setup) -> Setup:
         seen.add(setup.keeps)
         setup = setups[setup.keeps]
     return setup
+
+
+def size_left(found: Review, piece: Piece) -> str:
+    """Size or place of a surface as an operation left it, in the units of the file: `Ø48.6`, `Ø48 h6`, `at 20.4`.
+
+    A pattern has its count and circle, which no operation changes: `72 on Ø108`.
+    """
+    if piece.kind in ("face", "centre"):
+        return f"at {plain(found, piece.low)}"
+    if piece.kind in ("teeth", "holes", "slot", "lines"):
+        return pattern_size(found, piece.part, piece.name)
+    stated = getattr(found.loaded.job.parts[piece.part].surfaces[piece.name], "diameter", None)
+    drawn_at = stated.value if isinstance(stated, Dimension) else stated
+    size = 2.0 * (piece.radius or 0.0)
+    as_drawn = drawn_at is not None and abs(size - drawn_at) < 1e-9
+    return f"Ø{stated_size(found, piece.part, piece.name) if as_drawn else plain(found, size)}"
 
 
 def held_part(found: Review, setup: Setup) -> str:

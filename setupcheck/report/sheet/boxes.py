@@ -11,21 +11,24 @@ from setupcheck.flow import Review
 from setupcheck.jobfile.models import Deviation, Dimension, Part, Round, Toothing
 from setupcheck.jobfile.setups import Cut, Hold, Join, Setup
 from setupcheck.jobfile.travel import Travel
+from setupcheck.quantities.devices import DEVICES
 from setupcheck.record import record
-from setupcheck.report.sheet.accept import accepted
+from setupcheck.report.sheet.accept import Accept, accepted
 from setupcheck.report.sheet.showing import Showing
 from setupcheck.report.wording import clean
 
+NO_LIMIT = Accept("")
 PLACES = 8
 """Places round a wheel at which backlash is read. Source: common practice."""
 
 
 @record
 class Cell:
-    """One box: what stands behind the row's key (`.measured`), its unit or a word for it."""
+    """One box: what stands behind the row's key (`.measured`), its unit or a word for it; wide where two values go in."""
 
     end: str
     unit: str
+    wide: bool = False
 
 
 @record
@@ -35,7 +38,7 @@ class Row:
     key: str
     says: str
     plan: str
-    accept: str
+    accept: Accept
     line: int
     cells: tuple[Cell, ...]
 
@@ -68,11 +71,11 @@ class Boxes:
         return self._row(key, says, self.show.size(given), cells)
 
     def plain(self, key: str, says: str, plan: str, unit: str) -> Row:
-        """An entry that is one value."""
-        return self._row(key, says, plan, (Cell("", unit),))
+        """An entry that is one value, or a list of two."""
+        return self._row(key, says, plan, (Cell("", unit, wide=unit.startswith("[")),))
 
     def _row(self, key: str, says: str, plan: str, cells: tuple[Cell, ...]) -> Row:
-        return Row(key, clean(says), plan, self.accept.get(key, ""), self.found.loaded.line(key), cells)
+        return Row(key, clean(says), plan, self.accept.get(key, NO_LIMIT), self.found.loaded.line(key), cells)
 
     # -- one setup -----------------------------------------------------------------------------------------------------
 
@@ -108,7 +111,12 @@ class Boxes:
         ):
             if entry is None:
                 continue
-            if entry.runout is not None or entry.clearance is None:
+            for axis in ("x", "y") if DEVICES[entry.by].xy else ():
+                zero = getattr(entry, axis)
+                plan = f"± {self.show.fine(zero)}" if zero is not None else ""
+                says = f"{entry.on} found along {axis.upper()}, known to"
+                yield self.plain(f"{path}.{step}.{axis}", says, plan, f"± {self.fine}")
+            if entry.runout is not None or (entry.clearance is None and not DEVICES[entry.by].xy):
                 yield self.reading(f"{path}.{step}.runout", place.format(entry.on), entry.runout)
             if entry.clearance is not None:
                 plan = f"{self.show.fine(entry.clearance[0])} to {self.show.fine(entry.clearance[1])}"
@@ -158,6 +166,8 @@ class Boxes:
             yield self.reading(f"{path}.error", f"length of {name}, off its plan", cut.error, signed=True)
         if cut.off_centre is not None:
             yield self.reading(f"{path}.off_centre", f"cutter of {name}, off the axis", cut.off_centre, signed=True)
+        for axis, at in (cut.spindle_to_axis or {}).items():
+            yield self.size(f"{path}.spindle_to_axis.{axis}", f"spindle over the table's axis, {axis.upper()}", at)
         if cut.depth_from is not None:
             touched = cut.depth_from
             key = f"{path}.depth_from"
@@ -172,7 +182,7 @@ class Boxes:
     def _prove_out(self, readings: Mapping[str, float], path: str, surface: object) -> Iterator[Row]:
         count = surface.count if isinstance(surface, Toothing) else 0
         names = list(readings) or [f"gap {n}" for n in _round_the_wheel(count, 4)]
-        cells = tuple(Cell(f".readings.{name}", f"{name}, {self.fine}") for name in names[:PLACES])
+        cells = tuple(Cell(f".readings.{name}", self.fine) for name in names[:PLACES])
         yield self._row(
             path, "dial over the ball in each prove-out gap", "", (*cells, Cell(".uncertainty", f"± {self.fine}"))
         )
@@ -263,7 +273,7 @@ class Boxes:
         )
         if isinstance(wheel, Toothing):
             gaps = _round_the_wheel(wheel.count, PLACES)
-            places = tuple(Cell(f".readings.gap {n}", f"gap {n}, {self.fine}") for n in gaps)
+            places = tuple(Cell(f".readings.gap {n}", self.fine) for n in gaps)
             says = "backlash round the wheel, the number of the gap at the worm; end float included or taken-out"
             more = (
                 Cell(".uncertainty", f"± {self.fine}"),
