@@ -26,6 +26,7 @@ from setupcheck.quantities.joining import JOINING
 from setupcheck.quantities.joint_heat import HEAT
 from setupcheck.quantities.joint_states import IN_STATES
 from setupcheck.quantities.marking import MARK
+from setupcheck.quantities.measure_first import MEASURE_FIRST
 from setupcheck.quantities.measuring import MEASURE
 from setupcheck.quantities.meshing import MESHING
 from setupcheck.quantities.opening import OPENING
@@ -308,6 +309,7 @@ TABLES: tuple[Quantity, ...] = (
     *ADVICE,
     *CLAMP,
     *MEASURE,
+    *MEASURE_FIRST,
     *THEN_NOW,
     *PROGRESS,
     *PROVE,
