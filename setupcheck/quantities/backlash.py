@@ -116,7 +116,7 @@ def chain(floor: Floor, stack: Stack) -> Chain | Open:
     if opened or not isinstance(found, Drive) or isinstance(both, Open) or not isinstance(made, WheelCut):
         return all_missing(*opened)
     g, r = both
-    gap, depth, mesh = gap_finished(floor, made, g), depth_of_cut(floor, made, g), _mesh(floor, found)
+    gap, depth, mesh = gap_finished(floor, made, g), deeper(floor, made, g), _mesh(floor, found)
     grown = _growth(floor, found)
     opened = [x for x in (gap, depth, mesh, grown) if isinstance(x, Open)]
     if opened:
@@ -154,11 +154,13 @@ def along_of(floor: Floor, stack: Stack, found: Drive) -> float:
 
 
 def gap_of_insert(floor: Floor, cut: WheelCut, width: float) -> float:
-    """Gap of the wheel at its rolling circle that an insert of this width cuts [mm], by halving the error of the width.
+    """Gap of the wheel at its rolling circle that an insert of this width cuts at its planned depth under the touched surface
+    as drawn [mm], by halving the error of the width.
 
     Raises: OutOfRange for sizes that give no insert.  Source: worm.insert.insert_widths turned round.
     """
-    height = cut.cutter.width_at if cut.cutter.width_at is not None else cut.pitch_height
+    cut = cut.as_drawn()
+    height = cut.width_height
     tilt = tilt_of(floor, cut)
     gap = width
     for _ in range(40):
@@ -186,7 +188,7 @@ def gap_as_made(floor: Floor, cut: WheelCut, teeth: State) -> Account | Open:
     Source: rack rolling on the wheel's reference circle, derived here.
     """
     found = cut.drive
-    gap, depth, grown = _gap(floor, cut), depth_of_cut(floor, cut, teeth), _growth(floor, found)
+    gap, depth, grown = _gap(floor, cut), deeper(floor, cut, teeth), _growth(floor, found)
     opened = [x for x in (gap, depth, grown) if isinstance(x, Open)]
     if opened:
         return all_missing(*opened)
@@ -207,8 +209,18 @@ def _gap(floor: Floor, cut: WheelCut) -> Account | Open:
         return Open(because=str(why))
 
 
+def deeper(floor: Floor, cut: WheelCut, teeth: State) -> Account | Open:
+    """The same from the depth under the touched surface as drawn: half of what it was measured smaller comes to it [mm].
+
+    Source: geometry, derived here.
+    """
+    account = depth_of_cut(floor, cut, teeth)
+    return account if isinstance(account, Open) else account.plus_constant(cut.drawn_root - cut.root)
+
+
 def depth_of_cut(floor: Floor, cut: WheelCut, teeth: State) -> Account | Open:
-    """How much deeper than planned the insert goes, on the radius [mm]: feed, size touched, and where round it was touched.
+    """How much deeper than fed from the touched surface the insert goes, on the radius [mm]: feed, what the size touched may
+    still be off, and where round it was touched.
 
     The touched surface runs out to the axis that the wheel turns about while it is cut, and it is touched at one place.
     Source: geometry, derived here.

@@ -195,13 +195,13 @@ def insert_gap(shape: Shape, insert: str, error: float | None, budget: float | N
 
 def width_needed(cut: WheelCut, floor: Floor) -> float:
     """Width of the insert at pitch height that just fits the thread as measured, no backlash [mm]. Source: worm.insert."""
-    return insert_width(cut, cut.drive.thread, height=cut.pitch_height, tilt=tilt_of(floor, cut))
+    return insert_width(cut.as_drawn(), cut.drive.thread, height=cut.drawn_height, tilt=tilt_of(floor, cut))
 
 
 def width_at_pitch(cut: WheelCut) -> float | None:
     """Smallest width of the insert at pitch height [mm]; None where none is stated there. Source: the job file."""
     given = cut.cutter.width
-    if given is None or (cut.cutter.width_at is not None and abs(cut.cutter.width_at - cut.pitch_height) > NEAR):
+    if given is None or (cut.cutter.width_at is not None and abs(cut.cutter.width_at - cut.drawn_height) > NEAR):
         return None
     if given.measured is not None:
         return given.measured - (given.uncertainty or 0.0)

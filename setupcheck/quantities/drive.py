@@ -2,11 +2,13 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
+
 from setupcheck.jobfile.models import Cutter, Dimension
 from setupcheck.jobfile.names import Ref
 from setupcheck.jobfile.setups import Cut
 from setupcheck.quantities.book import Open
-from setupcheck.quantities.joint_shape import cut_of, touched_diameter
+from setupcheck.quantities.joint_shape import cut_of, drawn_diameter, touched_diameter
 from setupcheck.quantities.shop import Floor
 from setupcheck.quantities.thread import Thread, not_straight, thread
 from setupcheck.quantities.worm_sizes import settled, toothing
@@ -101,6 +103,7 @@ class WheelCut:
 
     path, cutter_path  where both stand in the job file
     root   radius of the gap's bottom in the mid-plane [mm];  clearance  between it and the worm's tip, may be negative
+    drawn_root  the same for the touched surface as drawn, for which the insert was made, whatever was measured since [mm]
     radius  of the cutter's tip circle [mm]
     """
 
@@ -113,11 +116,30 @@ class WheelCut:
     radius: float
     root: float
     clearance: float
+    drawn_root: float
 
     @property
     def pitch_height(self) -> float:
         """Height of the rolling circle above the cutter's tip, in the mid-plane [mm]."""
         return self.drive.wheel_diameter / 2.0 - self.root
+
+    def as_drawn(self) -> WheelCut:
+        """The cut under the touched surface as drawn, whatever was measured of it."""
+        return replace(self, root=self.drawn_root, clearance=self.clearance + self.root - self.drawn_root)
+
+    @property
+    def drawn_height(self) -> float:
+        """Pitch height for the touched surface as drawn, for which the insert is ground [mm].
+
+        A size measured there later moves the insert, and not where on it its width stands.
+        """
+        return self.drive.wheel_diameter / 2.0 - self.drawn_root
+
+    @property
+    def width_height(self) -> float:
+        """Height above the tip at which the job states the insert's width [mm]: as it says, else pitch height as drawn."""
+        stated = self.cutter.width_at
+        return stated if stated is not None else self.drawn_height
 
 
 def wheel_cut(floor: Floor, found: Drive) -> WheelCut | Open | None:
@@ -144,6 +166,7 @@ def wheel_cut(floor: Floor, found: Drive) -> WheelCut | Open | None:
     if missing or cut.depth is None or cutter.tip_radius is None or not isinstance(touched, float):
         return Open(missing or (f"{path}.depth_from",))
     root = touched / 2.0 - cut.depth
+    drawn = drawn_diameter(floor, found.wheel.part, cut)
     return WheelCut(
         drive=found,
         op=op,
@@ -154,4 +177,5 @@ def wheel_cut(floor: Floor, found: Drive) -> WheelCut | Open | None:
         radius=cutter.tip_radius,
         root=root,
         clearance=found.centre_distance - found.tip_diameter / 2.0 - root,
+        drawn_root=(drawn if isinstance(drawn, float) else touched) / 2.0 - cut.depth,
     )

@@ -52,7 +52,7 @@ def wide_gap(gap: Sections, made_for: Cut, kind: str, cut: WheelCut) -> Sections
 
     if cut.cutter.width is None:
         return gap
-    wanted, height = middle(cut.cutter.width), width_height(cut)
+    wanted, height = middle(cut.cutter.width), cut.width_height
     by, made = 0.0, profile(gap, made_for, kind)
     if not 0.0 <= height <= made.heights[-1]:
         return Open((f"{cut.cutter_path}.width_at",), f"the profile ends {made.heights[-1]:.3f} mm above the tip")
@@ -74,11 +74,6 @@ def profile(gap: Sections, made_for: Cut, kind: str) -> Insert:
     from setupcheck.worm.gap_insert import envelope_insert, mid_plane_insert
 
     return (envelope_insert if kind == "envelope" else mid_plane_insert)(gap, made_for)
-
-
-def width_height(cut: WheelCut) -> float:
-    """Height above the tip at which the job states the insert's width [mm]; pitch height where it says none."""
-    return cut.cutter.width_at if cut.cutter.width_at is not None else cut.pitch_height
 
 
 def tip_width(profile: Insert) -> float:

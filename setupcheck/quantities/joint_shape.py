@@ -178,6 +178,13 @@ def touched_diameter(floor: Floor, part: str, cut: Cut) -> float | Open | None:
         return None
     if cut.depth_from.measured is not None:
         return cut.depth_from.measured
+    return drawn_diameter(floor, part, cut)
+
+
+def drawn_diameter(floor: Floor, part: str, cut: Cut) -> float | Open | None:
+    """The same as drawn, whatever was measured [mm]."""
+    if cut.depth_from is None:
+        return None
     ref = floor.loaded.ref(cut.depth_from.surface, part)
     node = _node(floor, ref)
     if isinstance(node, Round):

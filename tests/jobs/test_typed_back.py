@@ -2,12 +2,13 @@
 
 from __future__ import annotations
 
+import math
 import re
 from pathlib import Path
 
 import pytest
 
-from setupcheck.flow import Review, review
+from setupcheck.flow import Review, review, vary
 from setupcheck.jobfile.reading import LoadedJob, read_job_text
 from setupcheck.report.remedies import remedy_in_words
 from setupcheck.report.text import as_text
@@ -274,3 +275,17 @@ def test_what_no_holding_changes_is_not_sent_to_one_holding() -> None:
     found, _, remedy = failing(text, "STACK-002", "contact-area")
     assert "holding" not in remedy
     assert "Biggest: ." not in as_text(found)
+
+
+def test_a_throat_measured_small_lets_the_insert_deeper_and_opens_the_backlash() -> None:
+    """The insert was ground for the throat as drawn: 2 d tan(alpha) more backlash along the circle, d deeper on the radius."""
+    job = shipped("jobs/rotator-worm-wheel.yaml")
+    key = "setups.40.cut.teeth.depth_from"
+    exact = {f"{key}.measured": "111 mm", f"{key}.uncertainty": "1 um"}
+    small = {f"{key}.measured": "110.95 mm", f"{key}.uncertainty": "1 um"}
+    drawn, deep = (
+        next(r for k, r in vary(job, each).after.results.items() if k.startswith("backlash.")) for each in (exact, small)
+    )
+    wider = 2.0 * 0.025 * math.tan(math.radians(20.0))
+    assert wider == pytest.approx(deep.combined.worst.high - drawn.combined.worst.high, rel=0.01)
+    assert 0.0 < deep.combined.worst.low - drawn.combined.worst.low < wider, "flanks cut off their depth fit less well"
