@@ -62,6 +62,8 @@ Device = Literal[
 ]
 
 _JAWS = ("three-jaw", "four-jaw", "soft-jaws", "shimmed-jaws")
+CHUCKED = ("three-jaw", "soft-jaws", "shimmed-jaws", "collet", "pot-chuck")
+"""Devices that bring an error of their own, which nobody trues away. Source: common practice."""
 
 
 class Through(Shop):
@@ -121,11 +123,13 @@ class Centre(Shop):
     turned: Angle | None = None
 
     @model_validator(mode="after")
-    def a_grip_force_is_that_of_one_jaw(self) -> Self:
+    def what_is_said_of_a_chuck_belongs_to_one(self) -> Self:
         if self.grip_force is not None and self.by not in _JAWS:
             raise ValueError(
                 f"grip_force is the force of one jaw, and {self.by} is not held by jaws. Drop it, or write by: three-jaw"
             )
+        if self.runout is not None and self.runout.known_at is not None and self.by not in CHUCKED:
+            raise ValueError(f"known_at is the bar a chuck was tested on, and {self.by} is none. Drop it")
         if self.grip_force == 0.0:
             raise ValueError("a grip_force of nothing holds nothing. Write the force of one jaw, as in 2 kN")
         return self

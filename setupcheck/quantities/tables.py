@@ -41,6 +41,7 @@ from setupcheck.quantities.then_now import THEN_NOW
 from setupcheck.quantities.thread import THREAD
 from setupcheck.quantities.through import THROUGH
 from setupcheck.quantities.tilting import TILT
+from setupcheck.quantities.usual import USUAL
 from setupcheck.quantities.ways import WAYS
 from setupcheck.quantities.wheel_over_balls import OVER_BALLS
 from setupcheck.quantities.wheel_sizes import WHEEL
@@ -272,6 +273,7 @@ TABLES: tuple[Quantity, ...] = (
     *ROUTE,
     *STACK,
     *HOLD,
+    *USUAL,
     *ALLOW,
     *DIVIDE,
     *WAYS,

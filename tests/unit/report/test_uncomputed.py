@@ -28,7 +28,7 @@ from tests.unit.report.sample import GEAR, PLATE, WHEEL, changed, line_of, loade
 
 READ = {
     "Dimension": "nominal lower upper fit measured uncertainty at_temperature",
-    "Deviation": "at_most measured uncertainty standard_uncertainty high_at device mark indicator",
+    "Deviation": "at_most measured uncertainty standard_uncertainty high_at device mark indicator known_at",
     "Round": "kind diameter low high hole made",
     "Flat": "kind at facing diameter hole made",
     "Throat": "kind diameter at made",
