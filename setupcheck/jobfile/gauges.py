@@ -18,7 +18,7 @@ _ERROR = {"at_most", "measured", "device"}
 
 
 def misplaced(drawing: Drawing) -> Iterator[Miss]:
-    """Every `indicator` and `known_at` away from the error of a hold, every `at_temperature` away from the diameter of a surface."""
+    """Every `indicator` and `known_at` away from a hold, every `at_temperature` away from the diameter of a surface."""
     yield from _within(drawing.data, ())
 
 

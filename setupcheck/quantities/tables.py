@@ -35,6 +35,7 @@ from setupcheck.quantities.placing import PLACE
 from setupcheck.quantities.pressing import PRESSING
 from setupcheck.quantities.progress import PROGRESS
 from setupcheck.quantities.prove_out import PROVE
+from setupcheck.quantities.sharing import SHARING
 from setupcheck.quantities.stated import STATED
 from setupcheck.quantities.strength import STRENGTH
 from setupcheck.quantities.then_now import THEN_NOW
@@ -274,6 +275,7 @@ TABLES: tuple[Quantity, ...] = (
     *STACK,
     *HOLD,
     *USUAL,
+    *SHARING,
     *ALLOW,
     *DIVIDE,
     *WAYS,

@@ -7,14 +7,13 @@ from setupcheck.jobfile.setups import CHUCKED, Centre, Setup
 from setupcheck.notation import FACTOR, show
 from setupcheck.quantities.book import Quantity
 from setupcheck.quantities.clamping import gripped
+from setupcheck.quantities.devices import DIALLED
 from setupcheck.quantities.route import machine_of
 from setupcheck.quantities.scopes import HoldEntry
 from setupcheck.quantities.shop import Floor
 from setupcheck.quantities.typical import Typical, typical
 
 _RUN_OUTS = ("runout", "face_runout")
-_DIALLED = ("four-jaw", "faceplate", "indicator")
-"""Devices in which the dial makes the part true, so that a finer dial makes it truer."""
 
 
 def _plain(given: Deviation | None, floor: Floor, path: str) -> float | None:
@@ -60,7 +59,7 @@ def advice(entry: HoldEntry, floor: Floor, planned: float) -> str | None:
         half = f"Run-out is the full movement of the dial over one turn; if this is half of it, write {double}"
     else:
         half = f"Run-out is the full movement of the dial, twice the eccentricity; if this is the eccentricity, write {double}"
-    dial = " or name the dial that shows it (indicator: 1 um)" if getattr(entry.entry, "by", "") in _DIALLED else ""
+    dial = " or name the dial that shows it (indicator: 1 um)" if getattr(entry.entry, "by", "") in DIALLED else ""
     return f"{half}. {told[:1].upper()}{told[1:]}. If it was read so true, write measured with its uncertainty{dial}."
 
 

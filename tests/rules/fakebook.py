@@ -116,6 +116,8 @@ QUANTITIES: Mapping[str, FakeQuantity] = {
         FakeQuantity("hold.usual_advice", "hold", "", 0),
         FakeQuantity("hold.size_off", "hold", "%", 0),
         FakeQuantity("hold.size_advice", "hold", "", 0),
+        FakeQuantity("hold.taken_anew", "setup", "", 0),
+        FakeQuantity("hold.keep_advice", "setup", "", 0),
         FakeQuantity("machine.as_planned", "setup", "um", 1),
         FakeQuantity("machine.best_usual", "setup", "um", 1),
         FakeQuantity("machine.usual_advice", "setup", "", 0),
