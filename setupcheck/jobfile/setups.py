@@ -8,6 +8,7 @@ from pydantic import BeforeValidator, Field, ValidationInfo, model_validator
 from setupcheck.jobfile.asked import Checked, Require, Waive
 from setupcheck.jobfile.dividing import Divide
 from setupcheck.jobfile.heating import Heat
+from setupcheck.jobfile.holders import CHUCKED, JAWS, Device
 from setupcheck.jobfile.models import (
     Cutter,
     Dim,
@@ -20,6 +21,7 @@ from setupcheck.jobfile.models import (
 )
 from setupcheck.jobfile.prove_out import ProveOut
 from setupcheck.jobfile.service import JointService
+from setupcheck.jobfile.turning import Turning
 from setupcheck.jobfile.types import (
     Angle,
     AngleBound,
@@ -38,32 +40,6 @@ from setupcheck.jobfile.types import (
     in_file_units,
 )
 from setupcheck.jobfile.worm import Mesh, Worm
-
-Device = Literal[
-    "three-jaw",
-    "four-jaw",
-    "soft-jaws",
-    "shimmed-jaws",
-    "collet",
-    "spigot",
-    "plain-mandrel",
-    "taper-mandrel",
-    "expanding-mandrel",
-    "centres",
-    "faceplate",
-    "edge-finder",
-    "indicator",
-    "fixture",
-    "vee-block",
-    "magnetic-chuck",
-    "pot-chuck",
-    "spindle",
-    "steady",
-]
-
-_JAWS = ("three-jaw", "four-jaw", "soft-jaws", "shimmed-jaws")
-CHUCKED = ("three-jaw", "soft-jaws", "shimmed-jaws", "collet", "pot-chuck")
-"""Devices that bring an error of their own, which nobody trues away. Source: common practice."""
 
 
 class Through(Shop):
@@ -107,6 +83,7 @@ class Centre(Shop):
     x, y       readings of an edge finder or indicator along two machine axes, each ±
     grip       stretch of the surface that the jaws or the mandrel hold;  grip_force  of each jaw on the part [N]
     turned     where the part's mark stands from the device's mark;  through  devices that this one stands on
+    jaws_stand_out  how far the jaws reach beyond the body of the chuck [mm]
     """
 
     on: str
@@ -121,13 +98,18 @@ class Centre(Shop):
     grip_force: Force | None = None
     through: tuple[Through, ...] = ()
     turned: Angle | None = None
+    jaws_stand_out: Length | None = None
 
     @model_validator(mode="after")
     def what_is_said_of_a_chuck_belongs_to_one(self) -> Self:
-        if self.grip_force is not None and self.by not in _JAWS:
+        if self.grip_force is not None and self.by not in JAWS:
             raise ValueError(
                 f"grip_force is the force of one jaw, and {self.by} is not held by jaws. Drop it, or write by: three-jaw"
             )
+        if self.jaws_stand_out is not None and self.by not in JAWS:
+            raise ValueError(f"jaws_stand_out is said of a chuck with jaws, and {self.by} has none. Drop it")
+        if self.jaws_stand_out is not None and self.jaws_stand_out < 0.0:
+            raise ValueError("jaws that end inside the chuck stand out by 0. Write jaws_stand_out: 0")
         if self.runout is not None and self.runout.known_at is not None and self.by not in CHUCKED:
             raise ValueError(f"known_at is the bar a chuck was tested on, and {self.by} is none. Drop it")
         if self.grip_force == 0.0:
@@ -378,6 +360,7 @@ class Setup(Shop):
     looks_at_tool  the end of the part that faces the tool
     hold   how the part is held;  keeps  instead, the operation whose holding was never opened
     head   its tilt;  divide  how the circle is divided;  cut  each surface that is cut, by its name
+    turning  what turns with the spindle, and how fast
     join   two parts put together
     """
 
@@ -390,6 +373,7 @@ class Setup(Shop):
     hold: Hold | None = None
     head: Head | None = None
     divide: Divide | None = None
+    turning: Turning | None = None
     cut: dict[str, Cut] = Field(default_factory=dict)
     join: Join | None = None
 

@@ -58,7 +58,7 @@ def _held_in(floor: Floor, op: int) -> list[Setup]:
     return found
 
 
-def _taken_by(floor: Floor, setup: Setup) -> Setup:
+def taken_by(floor: Floor, setup: Setup) -> Setup:
     """The setup that took the part which this one cuts."""
     while setup.keeps is not None:
         setup = _setup(floor, setup.keeps)
@@ -157,7 +157,7 @@ def overhang(floor: Floor, entry: CutEntry, op: int) -> float | None:
 
     None where nothing is said of the grip, or a centre or steady carries the part.  Source: common practice.
     """
-    setup = _taken_by(floor, _setup(floor, op))
+    setup = taken_by(floor, _setup(floor, op))
     centre = setup.hold.centre if setup.hold is not None else None
     if centre is None or centre.by not in CHUCKS or centre.grip is None or _supported(setup):
         return None

@@ -42,6 +42,7 @@ from setupcheck.quantities.then_now import THEN_NOW
 from setupcheck.quantities.thread import THREAD
 from setupcheck.quantities.through import THROUGH
 from setupcheck.quantities.tilting import TILT
+from setupcheck.quantities.turning import TURNING
 from setupcheck.quantities.usual import USUAL
 from setupcheck.quantities.ways import WAYS
 from setupcheck.quantities.wheel_over_balls import OVER_BALLS
@@ -312,6 +313,7 @@ TABLES: tuple[Quantity, ...] = (
     *PLACE,
     *ADVICE,
     *CLAMP,
+    *TURNING,
     *MEASURE,
     *MEASURE_FIRST,
     *THEN_NOW,

@@ -2,8 +2,9 @@
 
 from __future__ import annotations
 
+from setupcheck.jobfile.holders import CHUCKED
 from setupcheck.jobfile.models import Deviation
-from setupcheck.jobfile.setups import CHUCKED, Centre, Setup
+from setupcheck.jobfile.setups import Centre, Setup
 from setupcheck.notation import FACTOR, show
 from setupcheck.quantities.book import Quantity
 from setupcheck.quantities.clamping import gripped

@@ -19,6 +19,7 @@ from setupcheck.jobfile import (
     properties,
     prove_out,
     setups,
+    turning,
     worm,
 )
 from setupcheck.report.json import as_json
@@ -57,7 +58,7 @@ READ = {
     "Checked": "caution op by note",
     "Through": "by runout",
     "Span": "low high",
-    "Centre": "on by at runout clearance rests x y grip grip_force through turned",
+    "Centre": "on by at runout clearance rests x y grip grip_force through turned jaws_stand_out",
     "Square": "on by face_runout across chip",
     "Spacer": "name length",
     "MeasuredPair": "name bore journal uncertainty",
@@ -77,7 +78,8 @@ READ = {
     "ProveOut": "depth ball about readings uncertainty",
     "Heat": "hub shaft by oven_error read_by carry cold_by cold_error gauge flash_point room_volume coolant",
     "Join": "outer inner by square fit_error clearance rests stop mounted_at",
-    "Setup": "op note machine part looks_at_tool keeps hold head divide cut join",
+    "Setup": "op note machine part looks_at_tool keeps hold head divide cut join turning",
+    "Turning": "speed chuck_speed off_centre off_by bar_behind",
     "Job": "setupcheck title job revision units room confidence parts worm mesh cutters machines setups place require "
     "waive checked done",
 }
@@ -95,6 +97,7 @@ RECORDS = {
         properties,
         prove_out,
         setups,
+        turning,
         heating,
         worm,
         marks,
