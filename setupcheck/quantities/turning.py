@@ -1,4 +1,4 @@
-"""What turns with the spindle: jaws that stand out, the speed of the chuck, mass off the axis, a bar behind. mm, kg, N, rev/min."""
+"""What turns with the spindle: jaws that stand out, speed of the chuck, mass off the axis, a bar behind. mm, kg, N, rev/min."""
 
 from __future__ import annotations
 
