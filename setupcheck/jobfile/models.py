@@ -99,6 +99,7 @@ class Deviation(Shop):
     device       what held or measured it; alone it takes its typical value
     mark         `kept`: the part goes back the same way round in the same device, so it is one cause in several setups
     indicator    one division of the indicator that reads it [mm], at a hold
+    known_at     diameter on which a chuck or collet was tested so [mm], at the run-out of a hold
     """
 
     at_most: Bound | None = None
@@ -109,6 +110,7 @@ class Deviation(Shop):
     device: str | None = None
     mark: Literal["kept", "lost"] | None = None
     indicator: Division | None = None
+    known_at: Size | None = None
 
     @model_validator(mode="before")
     @classmethod

@@ -83,6 +83,7 @@ _TYPES: tuple[tuple[object, Schema], ...] = (
     (types.Volume, _text("a volume", "40 m3")),
     (types.Coolant, _text("litres of nitrogen or kilograms of dry ice", "5 l", "2 kg")),
     (types.Force, _text("a force", "2 kN", "500 N")),
+    (types.Mass, _text("a mass", "0.5 kg", "300 g")),
     (types.Speed, _text("a speed", "300 rpm")),
     (types.Fraction, _number("a share, as a percentage or below 1", "95 %", 0.95)),
     (types.Limit, _LIMIT),

@@ -17,7 +17,7 @@ from setupcheck.report.heating_plan import heating_plans_as_data
 from setupcheck.report.insert import inserts_as_data
 from setupcheck.report.joint import joints_as_data
 from setupcheck.report.remedies import remedy_in_words
-from setupcheck.report.rests import record_as_data
+from setupcheck.report.rests import first_as_data, record_as_data
 from setupcheck.report.then_now import then_of
 from setupcheck.report.uncomputed import uncomputed
 from setupcheck.report.wording import clean
@@ -65,6 +65,7 @@ def as_data(found: Review) -> dict[str, object]:
         "counts": {v: found.evaluation.counts[v] for v in ("pass", "warn", "fail", "open", "waived")},
         "quantities": _quantities(found),
         "stacks": [_stack(found, scope) for scope in found.book.instances("stack")],
+        "measure_first": first_as_data(found),
         "gates": gates_as_data(found),
         "lengths": lengths_as_data(found),
         "joints": joints,

@@ -19,7 +19,7 @@ from setupcheck.report.joint import joints
 from setupcheck.report.progress import still_to_move
 from setupcheck.report.prove_out import prove_outs
 from setupcheck.report.remedies import remedy_in_words
-from setupcheck.report.rests import how_known, record_used, rests_in_words
+from setupcheck.report.rests import how_known, measure_first, record_used, rests_in_words
 from setupcheck.report.then_now import then_now
 from setupcheck.report.uncomputed import in_lines, uncomputed
 from setupcheck.report.wording import clean, finer, in_unit, title_of, unit_of, wrap
@@ -42,6 +42,7 @@ def as_text(found: Review, *, everything: bool = False) -> str:
         _stops(found),
         _findings(found, everything),
         _requirements(found, everything),
+        measure_first(found, everything),
         then_now(found, everything),
         still_to_move(found),
         prove_outs(found),

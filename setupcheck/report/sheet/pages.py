@@ -10,7 +10,6 @@ from setupcheck.notation import show
 from setupcheck.quantities.book import Known
 from setupcheck.quantities.index_table import IndexTable
 from setupcheck.quantities.scopes import stack_of
-from setupcheck.record import record
 from setupcheck.report.causes import cause_in_parts
 from setupcheck.report.heating_plan import heating_plans_as_data
 from setupcheck.report.index_table import OnPaper, on_paper
@@ -19,8 +18,9 @@ from setupcheck.report.insert import readings as ground
 from setupcheck.report.joint import joints
 from setupcheck.report.pictures import Picture, pictures
 from setupcheck.report.remedies import remedy_in_words
-from setupcheck.report.sheet.boxes import Boxes, Row
+from setupcheck.report.sheet.boxes import Boxes
 from setupcheck.report.sheet.checks import checks, sign_off
+from setupcheck.report.sheet.records import Caution, Operation, Share, Sheet, Step, Trouble
 from setupcheck.report.sheet.showing import paper
 from setupcheck.report.sheet.words import ROLE, Said, Words
 from setupcheck.report.text import counts, limits_in_words
@@ -52,116 +52,6 @@ MOST_STACKS = 5
 MOST_PLACES = 2
 """Operations at which a caution still is their own and stands on their pages; one of more setups stands on the page of cautions.
 Source: our choice, so that what is special to a setup is not lost among what always holds."""
-
-
-@record
-class Caution:
-    """A caution once, with where it applies and whether somebody signed for it."""
-
-    text: str
-    where: str
-    state: str
-    stop: bool
-
-
-@record
-class Trouble:
-    """A finding that is not passed, and what to do about it."""
-
-    verdict: str
-    rule: str
-    at: str
-    line: int
-    message: str
-    remedy: str
-
-
-@record
-class Step:
-    """One line of the route."""
-
-    op: int
-    machine: str
-    held: tuple[Said, ...]
-    cuts: tuple[str, ...]
-
-
-@record
-class Share:
-    """What one operation adds to one requirement, and its largest single cause."""
-
-    title: str
-    part: str
-    mostly: str
-    worst: str
-    room: str
-    inside: bool
-
-
-@record
-class Operation:
-    """One page: everything that one operation needs at the machine."""
-
-    op: int
-    machine: str
-    note: str
-    toward: str
-    cautions: tuple[Caution, ...]
-    general: bool
-    troubles: tuple[Trouble, ...]
-    held: tuple[Said, ...]
-    head: tuple[Said, ...]
-    divide: tuple[Said, ...]
-    cuts: tuple[Said, ...]
-    passes: tuple[tuple[str, list[tuple[str, str]]], ...]
-    joined: tuple[Said, ...]
-    worked: tuple[Said, ...]
-    heating: tuple[str, ...]
-    boxes: tuple[Row, ...]
-    shares: tuple[Share, ...]
-    checks: tuple[str, ...]
-    pictures: tuple[Picture, ...]
-
-
-@record(eq=False)
-class Sheet:
-    """All pages."""
-
-    title: str
-    job: str
-    revision: str
-    file: str
-    sha256: str
-    version: str
-    rule_book: str
-    rule_hash: str
-    verdict: str
-    limited: str
-    counts: str
-    units: str
-    room: str
-    parts: tuple[Said, ...]
-    troubles: tuple[Trouble, ...]
-    unsigned: int
-    stopped: str
-    cautions: tuple[Caution, ...]
-    data: tuple[Said, ...]
-    asked: tuple[str, ...]
-    route: tuple[Step, ...]
-    incoming: tuple[Row, ...]
-    operations: tuple[Operation, ...]
-    tables: tuple[OnPaper, ...]
-    texts: tuple[tuple[str, str], ...]
-    finished: tuple[Row, ...]
-    grid: bool
-    overview: tuple[Picture, ...]
-    transfers: tuple[Picture, ...]
-    stacks: tuple[Picture, ...]
-    more_stacks: int
-    not_computed: tuple[str, ...]
-    sign_off: tuple[str, ...]
-    mark: str
-    closing: str
 
 
 def sheet_of(found: Review, read: ReadBack | None = None) -> Sheet:

@@ -22,6 +22,7 @@ from setupcheck.jobfile import (
     touched,
     travel,
     truing,
+    turning,
     worm,
 )
 from setupcheck.report.json import as_json
@@ -31,7 +32,7 @@ from tests.unit.report.sample import GEAR, PLATE, WHEEL, changed, line_of, loade
 
 READ = {
     "Dimension": "nominal lower upper fit measured uncertainty at_temperature",
-    "Deviation": "at_most measured uncertainty standard_uncertainty high_at device mark indicator",
+    "Deviation": "at_most measured uncertainty standard_uncertainty high_at device mark indicator known_at",
     "Round": "kind diameter low high hole made to_diameter",
     "Flat": "kind at facing diameter hole made",
     "Throat": "kind diameter at made",
@@ -61,7 +62,7 @@ READ = {
     "Checked": "caution op by note",
     "Through": "by runout",
     "Span": "low high",
-    "Centre": "on by at runout clearance rests x y grip grip_force through turned",
+    "Centre": "on by at runout clearance rests x y grip grip_force through turned jaws_stand_out",
     "Square": "on by face_runout across chip",
     "Spacer": "name length",
     "MeasuredPair": "name bore journal uncertainty",
@@ -83,7 +84,8 @@ READ = {
     "Near": "what stands away",
     "Trued": "on about runout",
     "Join": "outer inner by square fit_error trued clearance rests stop mounted_at",
-    "Setup": "op note machine part looks_at_tool keeps hold head divide cut join",
+    "Setup": "op note machine part looks_at_tool keeps hold head divide cut join turning",
+    "Turning": "speed chuck_speed off_centre off_by bar_behind",
     "Job": "setupcheck title job revision units room confidence parts worm mesh cutters machines setups place require "
     "waive checked done",
 }
@@ -103,6 +105,7 @@ RECORDS = {
         setups,
         touched,
         truing,
+        turning,
         heating,
         worm,
         marks,
