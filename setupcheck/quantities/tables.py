@@ -25,6 +25,7 @@ from setupcheck.quantities.inserts import INSERTS
 from setupcheck.quantities.joining import JOINING
 from setupcheck.quantities.joint_heat import HEAT
 from setupcheck.quantities.joint_states import IN_STATES
+from setupcheck.quantities.leaning import LEAN
 from setupcheck.quantities.marking import MARK
 from setupcheck.quantities.measure_first import MEASURE_FIRST
 from setupcheck.quantities.measuring import MEASURE
@@ -277,6 +278,7 @@ TABLES: tuple[Quantity, ...] = (
     *HOLD,
     *USUAL,
     *SHARING,
+    *LEAN,
     *ALLOW,
     *DIVIDE,
     *WAYS,
