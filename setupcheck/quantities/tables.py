@@ -31,6 +31,7 @@ from setupcheck.quantities.joining import JOINING
 from setupcheck.quantities.joint_heat import HEAT
 from setupcheck.quantities.joint_states import IN_STATES
 from setupcheck.quantities.keyways import KEYWAYS
+from setupcheck.quantities.leaning import LEAN
 from setupcheck.quantities.marking import MARK
 from setupcheck.quantities.measure_first import MEASURE_FIRST
 from setupcheck.quantities.measuring import MEASURE
@@ -284,6 +285,7 @@ TABLES: tuple[Quantity, ...] = (
     *HOLD,
     *USUAL,
     *SHARING,
+    *LEAN,
     *ALLOW,
     *DIVIDE,
     *WAYS,

@@ -14,6 +14,8 @@ from setupcheck.quantities.scopes import HoldEntry
 from setupcheck.quantities.shop import Floor
 from setupcheck.quantities.typical import Typical, typical
 
+FINEST = 0.001
+"""Division of the finest dial that usually stands at a machine [mm]. Source: common practice."""
 _RUN_OUTS = ("runout", "face_runout")
 
 
@@ -35,10 +37,12 @@ def _row(entry: HoldEntry) -> Typical | None:
 def stated(entry: HoldEntry, floor: Floor, path: str) -> float | None:
     """Run-out of a hold as planned, a full indicator movement [mm], where nothing but the plan says it.
 
-    None where it is measured, stands in the shop's record, or names the dial it is read with (MEASURE-007 looks at that).
+    None where it is measured, stands in the shop's record, or names the dial it is read with (MEASURE-007 looks at that);
+    jaws over shims that nobody measured are MEASURE-003's.
     Source: the job file.
     """
-    if entry.key not in _RUN_OUTS or _row(entry) is None:
+    over_shims = getattr(entry.entry, "by", None) == "shimmed-jaws"
+    if entry.key not in _RUN_OUTS or over_shims or _row(entry) is None:
         return None
     return _plain(entry.error, floor, f"{path}.{entry.key}")
 
@@ -60,7 +64,8 @@ def advice(entry: HoldEntry, floor: Floor, planned: float) -> str | None:
         half = f"Run-out is the full movement of the dial over one turn; if this is half of it, write {double}"
     else:
         half = f"Run-out is the full movement of the dial, twice the eccentricity; if this is the eccentricity, write {double}"
-    dial = " or name the dial that shows it (indicator: 1 um)" if getattr(entry.entry, "by", "") in DIALLED else ""
+    fine = "0.05 thou" if floor.loaded.job.units == "in" else "1 um"
+    dial = f" or name the dial that shows it (indicator: {fine})" if getattr(entry.entry, "by", "") in DIALLED else ""
     return f"{half}. {told[:1].upper()}{told[1:]}. If it was read so true, write measured with its uncertainty{dial}."
 
 
@@ -149,6 +154,20 @@ def _mm(floor: Floor, length: float) -> str:
     return show(length, "in" if inches else "mm", len(shown.partition(".")[2]))
 
 
+def reading_u(entry: HoldEntry) -> float | None:
+    """Expanded uncertainty of a reading at a hold [mm], where one is stated. Source: the job file, k = 2."""
+    given = entry.error
+    if given is None or given.measured is None or (given.uncertainty is None and given.standard_uncertainty is None):
+        return None
+    return 2.0 * given.u
+
+
+def tenth_division(entry: HoldEntry) -> float | None:
+    """A tenth of a division of the dial that is named, else of FINEST [mm]. Source: our screening choice."""
+    given = entry.error
+    return (given.indicator or FINEST) / 10.0 if given is not None else None
+
+
 _AT = {"entry": ":", "floor": "route.floor"}
 _SETUP = {"floor": "route.floor", "setup": ":"}
 _HERE = {"floor": "route.floor", "entry": ":", "op": "@op"}
@@ -179,6 +198,10 @@ USUAL = (
         axis_advice,
         {**_SETUP, "planned": "machine.as_planned"},
         "what to write where an axis is better than its kind of machine gives",
+    ),
+    Quantity("hold.reading_u", "hold", "um", 2, reading_u, {"entry": ":"}, "expanded uncertainty of the reading"),
+    Quantity(
+        "hold.tenth_division", "hold", "um", 2, tenth_division, {"entry": ":"}, "a tenth of a division of its dial"
     ),
     Quantity("hold.size_off", "hold", "%", 0, size_off, _HERE, "diameter held, off the one the chuck was tested on"),
     Quantity(
