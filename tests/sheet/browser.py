@@ -49,9 +49,18 @@ def as_printed(driver: Any, file: Path, paper: str) -> None:
     driver.get(file.as_uri())
 
 
+def _loaded(driver: Any, file: Path) -> None:
+    """Waits for the whole file: on a busy machine the driver comes back early now and then, and an empty page is printed."""
+    from selenium.webdriver.support.ui import WebDriverWait
+
+    there = "return document.readyState === 'complete' && document.documentURI === arguments[0]"
+    WebDriverWait(driver, 30).until(lambda d: d.execute_script(there, file.as_uri()))
+
+
 def as_pdf(driver: Any, file: Path, paper: str) -> bytes:
     """The file printed."""
     driver.get(file.as_uri())
+    _loaded(driver, file)
     width, height = PAPERS[paper]
     made = driver.execute_cdp_cmd(
         "Page.printToPDF",
