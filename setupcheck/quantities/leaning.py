@@ -19,12 +19,17 @@ def _hold(floor: Floor, op: int) -> Hold | None:
 def lean_read(floor: Floor, setup: Setup) -> str | None:
     """read or jaws-alone: whether a part that is trued by dial has anything read of its lean.
 
-    None where no dial trues it, and where nothing at all rules the lean (HOLD-001 says so).  Source: the job file.
+    None where no dial trues it, and where another rule speaks: nothing rules the lean (HOLD-001), its error is missing
+    (HOLD-003) or only typical (HOLD-004), so that a face nobody read never counts as read.  Source: the job file.
     """
     hold = setup.hold
     if hold is None or hold.centre is None or hold.centre.by not in DIALLED or floor.tilt_datums.get(setup.op) == 0:
         return None
-    return "read" if hold.square is not None or hold.and_centre is not None else "jaws-alone"
+    if hold.square is None and hold.and_centre is None:
+        return "jaws-alone"
+    given = (hold.square.face_runout if hold.square is not None else None, getattr(hold.and_centre, "runout", None))
+    own = any(one is not None and (one.at_most is not None or one.measured is not None) for one in given)
+    return "read" if own else None
 
 
 def _by_jaws() -> Typical | None:

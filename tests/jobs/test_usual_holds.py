@@ -208,6 +208,14 @@ def test_one_slip_of_the_lean_gives_one_finding() -> None:
     assert "nobody read the lean: usual of jaws is 10 um to 80 um, over 90.0 mm up to 3.1'" in one.remedy
 
 
+@pytest.mark.parametrize(
+    ("face_runout", "verdicts"), [(", face_runout: 15 um", ["pass"]), ("", []), (", face_runout: {device: jaws}", [])]
+)
+def test_a_face_nobody_read_is_never_told_as_read(face_runout: str, verdicts: list[str]) -> None:
+    seen = reviewed((SQUARE, SQUARE.replace(", face_runout: 15 um", face_runout)))
+    assert verdicts == [f.verdict for f in found("HOLD-013", seen)]
+
+
 def test_nothing_at_all_is_left_to_the_rule_of_the_lean() -> None:
     seen = reviewed((SQUARE, "    cut: {front"), (f"{FOUR_JAW}, grip: {{from: 5, to: 35}}", FOUR_JAW))
     assert [("HOLD-001", "open")] == said(seen)
