@@ -79,6 +79,26 @@ class RuleBookError(SetupcheckError):
         return place + _sentence(self.problem, self.hint)
 
 
+class HouseError(RuleBookError):
+    """A house file that cannot be used, with everything that is wrong in it, sorted by line."""
+
+    HOLDS = "Nothing of the house file acts; the shipped rule book stays as it is (--no-house judges by it alone)."
+
+    def __init__(self, wrong: Iterable[RuleBookError]) -> None:
+        found = tuple(sorted({str(one): one for one in wrong}.values(), key=lambda one: (one.file, one.line)))
+        first = found[0] if found else RuleBookError("", 0, "")
+        super().__init__(first.file, first.line, first.problem, first.hint)
+        self.args = (found,)  # the error must survive pickling between processes
+        self.wrong = found
+
+    def __str__(self) -> str:
+        shown = [str(one) for one in self.wrong[:MOST_SHOWN]]
+        if len(self.wrong) > MOST_SHOWN:
+            shown.append(f"and {len(self.wrong) - MOST_SHOWN} more")
+        shown.append(self.HOLDS)
+        return "\n".join(shown)
+
+
 def merged(problems: Iterable[Problem]) -> tuple[Problem, ...]:
     """Problems sorted by line and column; one that says the same about the same place is kept once."""
     first: dict[tuple[str, int, int, str], Problem] = {}

@@ -28,6 +28,7 @@ Gates are what the dial may show at each hold, with all else as planned [mm]:
 
 from __future__ import annotations
 
+import os
 from collections.abc import Callable, Mapping, Sequence
 from dataclasses import field
 from functools import cache
@@ -62,8 +63,9 @@ if TYPE_CHECKING:
     from setupcheck.division.results import Reduced
     from setupcheck.jobfile.changing import Change
     from setupcheck.quantities.against import Against
+    from setupcheck.quantities.device_record import DeviceRecord
     from setupcheck.quantities.mending import Mended
-    from setupcheck.quantities.own_values import RecordUse
+    from setupcheck.quantities.own_values import HouseUse, RecordUse
     from setupcheck.quantities.remedies import Remedy
     from setupcheck.quantities.teeth_read import TeethRead
     from setupcheck.rulebook.house import House
@@ -74,7 +76,9 @@ class Review:
     """Everything one review found.
 
     results   combined stacks by instance, those that could be computed;  remedies likewise, for stacks outside their limit
+    rulebook  the shipped one, or that of the house file
     devices   the shop's own record of its devices, and where the job names what stands in it
+    of_house  house values that were taken, and where
     """
 
     loaded: LoadedJob
@@ -89,6 +93,7 @@ class Review:
     remedies: Mapping[str, Remedy] = field(default_factory=dict)
     on: str | None = None
     devices: RecordUse | None = None
+    of_house: tuple[HouseUse, ...] = ()
 
 
 @cache
@@ -108,23 +113,25 @@ def load_job(path: str | Path) -> LoadedJob:
 def review(
     job: LoadedJob | str | Path,
     *,
-    house: str | Path | None = None,
+    house: House | str | Path | None = None,
     on: str | None = None,
-    devices: str | Path | None = None,
+    devices: DeviceRecord | str | Path | None = None,
 ) -> Review:
     """Judge a job.
 
-    house    file of a shop's own limits;  on  the day it is judged (ISO date), which waivers with an end need
-    devices  file of a shop's own record of its devices, whose limits stand in for typical values
+    house    a shop's house file, as its path or as `read_house` returned it; one that lies beside the job is not looked for
+    on       the day it is judged (ISO date), which waivers with an end need
+    devices  file of a shop's own record of its devices, whose limits stand in for typical values; before the house file's own
     Raises: JobError, RuleBookError.
     """
     loaded = job if isinstance(job, LoadedJob) else load_job(job)
+    own = read_house(house) if house is not None else None
     uses: RecordUse | None = None
-    if devices is not None:
-        loaded, uses = with_devices(loaded, devices)
+    of_house: tuple[HouseUse, ...] = ()
+    if devices is not None or own is not None:
+        loaded, uses, of_house = with_own(loaded, devices, own)
     floor, book = prepare(loaded)
-    book_of_rules = rules()
-    own = _house(Path(house), book_of_rules, book) if house is not None else None
+    book_of_rules = own.rulebook if own is not None else rules()
 
     @cache  # every rule asks for the same few
     def facts(scope: Scope, name: str) -> Fact:
@@ -146,6 +153,7 @@ def review(
         _remedies(loaded, floor, results),
         on,
         uses,
+        of_house,
     )
 
 
@@ -162,14 +170,14 @@ def vary(
     job: LoadedJob | Review | str | Path,
     changes: Sequence[Change] | Mapping[str, str | int | float],
     *,
-    house: str | Path | None = None,
+    house: House | str | Path | None = None,
     on: str | None = None,
-    devices: str | Path | None = None,
+    devices: DeviceRecord | str | Path | None = None,
 ) -> Varied:
     """Judge a job as it stands and with entries replaced or added, all at once. The file is not written to.
 
     changes  as records, or as a mapping of path to value in the job file's notation, {"setups.30.hold.stop.error": "20 um"}
-    job  a Review has been made with the same house limits, day and record: it is not made again
+    job  a Review has been made with the same house file, day and record: it is not made again
     Random draws are named after their causes, so that nothing moves which the changes do not reach.
     Raises: JobError for the file; JobError for the changes, each problem saying so; RuleBookError.
     """
@@ -177,6 +185,7 @@ def vary(
 
     if isinstance(changes, Mapping):
         changes = changes_of(changes)
+    house, devices = _read_once(house, devices)
     before = job if isinstance(job, Review) else review(job, house=house, on=on, devices=devices)
     with from_set(changes):  # also what shows only along the route
         after = review(changed(before.loaded, changes), house=house, on=on, devices=devices)
@@ -187,9 +196,9 @@ def mend(
     job: LoadedJob | str | Path,
     *,
     of: str | None = None,
-    house: str | Path | None = None,
+    house: House | str | Path | None = None,
     on: str | None = None,
-    devices: str | Path | None = None,
+    devices: DeviceRecord | str | Path | None = None,
 ) -> tuple[Review, Mended]:
     """Judge a job, and find what would bring it inside: entries, datums, orders; or what is good enough already.
 
@@ -199,13 +208,14 @@ def mend(
     from setupcheck.jobfile.editing import Edit, edited  # no review needs them
     from setupcheck.quantities.mending import Judged, mended
 
-    before = review(job, house=house, on=on, devices=devices)
+    own, devices = _read_once(house, devices)
+    before = review(job, house=own, on=on, devices=devices)
 
     def again(loaded: LoadedJob) -> LoadedJob:
-        return with_devices(loaded, devices)[0] if devices is not None else loaded
+        return with_own(loaded, devices, own)[0] if devices is not None or own is not None else loaded
 
     def judge(edits: Sequence[Edit]) -> Judged:
-        after = review(edited(before.loaded, edits), house=house, on=on, devices=devices)
+        after = review(edited(before.loaded, edits), house=own, on=on, devices=devices)
         return Judged(
             after.verdict, _counts(after), frozenset((line.op, line.id) for line in after.evaluation.cautions)
         )
@@ -231,6 +241,64 @@ def with_devices(loaded: LoadedJob, path: str | Path) -> tuple[LoadedJob, Record
     from setupcheck.quantities.own_values import with_record
 
     return with_record(loaded, read_record(path))
+
+
+def with_own(
+    loaded: LoadedJob, devices: DeviceRecord | str | Path | None, house: House | None
+) -> tuple[LoadedJob, RecordUse | None, tuple[HouseUse, ...]]:
+    """The job with what a record and a house file say of the shop's devices; the house's own record where no other is given.
+
+    Raises: JobError with every problem of the record.
+    """
+    from setupcheck.quantities.device_record import DeviceRecord, read_record  # few jobs have one
+    from setupcheck.quantities.own_values import HouseRow, HouseRows
+    from setupcheck.quantities.own_values import with_own as filled
+
+    found = read_record(devices) if isinstance(devices, str | Path) else devices
+    if found is None and house is not None and isinstance(house.devices, DeviceRecord):
+        found = house.devices
+    rows = tuple(HouseRow(v.device, v.what, v.value) for v in house.values) if house is not None else ()
+    return filled(loaded, found, HouseRows(house.name if house is not None else "", rows))
+
+
+def _read_once(
+    house: House | str | Path | None, devices: DeviceRecord | str | Path | None
+) -> tuple[House | None, DeviceRecord | None]:
+    """House file and record as read, for whoever reviews many times."""
+    if isinstance(devices, str | Path):
+        from setupcheck.quantities.device_record import read_record
+
+        devices = read_record(devices)
+    return read_house(house) if house is not None else None, devices
+
+
+HOUSE_FILE = "setupcheck-house.yaml"
+"""Name by which the command finds a house file beside the job."""
+
+
+def house_beside(job: str | Path) -> Path | None:
+    """The house file beside a job file, or None; a link that leads nowhere counts, so that it is not passed over in silence."""
+    found = Path(job).parent / HOUSE_FILE
+    return found if os.path.lexists(found) else None
+
+
+def read_house(house: House | str | Path, *, on: str | None = None) -> House:
+    """Read a shop's house file; one that has been read is returned as it is.
+
+    on  day on which it is checked (ISO date): a waiver that has ended by then is an error
+    Raises: HouseError with everything that is wrong with it and with its record of devices.
+    """
+    if not isinstance(house, str | Path):
+        return house
+    from setupcheck.quantities.device_record import read_record
+    from setupcheck.quantities.judgeable import judgeable
+    from setupcheck.quantities.typical import WHATS, table
+    from setupcheck.rulebook.house_file import Devices, load_house
+
+    quantities, words = judgeable()
+    shipped_values = {key: row.value for key, row in table().items()}
+    devices = Devices(WHATS, shipped_values, read_record)
+    return load_house(Path(house), rules(), quantities=quantities, words=words, devices=devices, on=on)
 
 
 @record(eq=False)
@@ -270,12 +338,6 @@ def read_back(
     found = read_test(readings, progress=progress)
     test = reduced(found, teeth, turns_with_work=turns_with_work)
     return ReadBack(loaded, teeth, test, against(book, floor, test, teeth.name, instrument=instrument), found.file)
-
-
-def _house(path: Path, rulebook: RuleBook, book: Book) -> House:
-    from setupcheck.rulebook.house import load_house  # few jobs have one
-
-    return load_house(path, rulebook, quantities=book.quantities)
 
 
 def _remedies(loaded: LoadedJob, floor: Floor, results: Mapping[str, Result]) -> Mapping[str, Remedy]:

@@ -8,6 +8,7 @@ from typing import Annotated
 
 import typer
 
+from setupcheck.cli.house import HouseFile, NoHouse, house_of
 from setupcheck.cli.review import EXIT, day_of
 
 
@@ -17,7 +18,8 @@ def command(
         str | None, typer.Option(metavar="require[N]", help="One requirement alone.", show_default=False)
     ] = None,
     as_json: Annotated[bool, typer.Option("--json", help="Print JSON instead of text.")] = False,
-    house: Annotated[Path | None, typer.Option(help="File of your shop's own limits.", show_default=False)] = None,
+    house: HouseFile = None,
+    no_house: NoHouse = False,
     record: Annotated[
         Path | None, typer.Option(help="CSV of what your shop's own devices gave.", show_default=False)
     ] = None,
@@ -32,7 +34,7 @@ def command(
     from setupcheck.flow import mend
 
     day = day_of(on) if on is not None else None
-    found, mended = mend(job, of=of, house=house, on=day, devices=record)
+    found, mended = mend(job, of=of, house=house_of(job, house, leave=no_house), on=day, devices=record)
     if as_json:
         from setupcheck.report.remedy_data import as_json as report
     else:

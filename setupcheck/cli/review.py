@@ -9,6 +9,8 @@ from typing import Annotated
 
 import typer
 
+from setupcheck.cli.house import HouseFile, NoHouse, house_of
+
 EXIT = {"pass": 0, "warn": 1, "open": 1, "fail": 3}
 
 
@@ -18,7 +20,8 @@ def command(
     everything: Annotated[
         bool, typer.Option("--all", help="Passed findings, every cause and every caution as well.")
     ] = False,
-    house: Annotated[Path | None, typer.Option(help="File of your shop's own limits.", show_default=False)] = None,
+    house: HouseFile = None,
+    no_house: NoHouse = False,
     record: Annotated[
         Path | None, typer.Option(help="CSV of what your shop's own devices gave.", show_default=False)
     ] = None,
@@ -40,7 +43,8 @@ def command(
     worst = 0
     for path in jobs:
         try:
-            code, text = _reviewed(path, as_json=as_json, everything=everything, house=house, record=record, on=on)
+            acts = house_of(path, house, leave=no_house)
+            code, text = _reviewed(path, as_json=as_json, everything=everything, house=acts, record=record, on=on)
         except SetupcheckError as wrong:
             print(wrong, file=sys.stderr)
             worst = max(worst, 2)

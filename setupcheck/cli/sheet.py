@@ -8,6 +8,7 @@ from typing import Annotated
 
 import typer
 
+from setupcheck.cli.house import HouseFile, NoHouse, house_of
 from setupcheck.cli.review import day_of
 from setupcheck.cli.writing import refuse_place, write_whole
 from setupcheck.errors import SetupcheckError, printable
@@ -25,7 +26,8 @@ def command(
     readings: Annotated[
         Path | None, typer.Option(help="CSV of a division test, drawn beside the prediction.", show_default=False)
     ] = None,
-    house: Annotated[Path | None, typer.Option(help="File of your shop's own limits.", show_default=False)] = None,
+    house: HouseFile = None,
+    no_house: NoHouse = False,
     record: Annotated[
         Path | None, typer.Option(help="CSV of what your shop's own devices gave.", show_default=False)
     ] = None,
@@ -38,7 +40,8 @@ def command(
     from setupcheck.flow import read_back, review
 
     refuse_place(out, force=force)
-    found = review(job, house=house, on=day_of(on) if on is not None else None, devices=record)
+    acts = house_of(job, house, leave=no_house)
+    found = review(job, house=acts, on=day_of(on) if on is not None else None, devices=record)
     read = read_back(found.loaded, readings) if readings is not None else None
     if drawing is not None:
         from setupcheck.report.pictures import pictures

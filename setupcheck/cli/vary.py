@@ -8,6 +8,7 @@ from typing import Annotated
 
 import typer
 
+from setupcheck.cli.house import HouseFile, NoHouse, house_of
 from setupcheck.cli.review import EXIT, day_of
 from setupcheck.cli.writing import refuse_place, write_whole
 from setupcheck.errors import printable
@@ -31,7 +32,8 @@ def command(
     ] = None,
     force: Annotated[bool, typer.Option("--force", help="Replace a file that is already there.")] = False,
     everything: Annotated[bool, typer.Option("--all", help="Every number that moved.")] = False,
-    house: Annotated[Path | None, typer.Option(help="File of your shop's own limits.", show_default=False)] = None,
+    house: HouseFile = None,
+    no_house: NoHouse = False,
     record: Annotated[
         Path | None, typer.Option(help="CSV of what your shop's own devices gave.", show_default=False)
     ] = None,
@@ -45,7 +47,7 @@ def command(
     """
     from functools import partial
 
-    from setupcheck.flow import review, vary
+    from setupcheck.flow import read_house, review, vary
     from setupcheck.report.vary import as_json as in_json
     from setupcheck.report.vary import as_text, typed_changes
 
@@ -57,9 +59,11 @@ def command(
         if not spans:
             raise typer.BadParameter("a drawing needs a range, as in --set KEY=2um..20um", param_hint="--svg")
         refuse_place(svg, force=force)
-    before = review(job, house=house, on=day, devices=record)
+    acts = house_of(job, house, leave=no_house)
+    own = read_house(acts) if acts is not None else None
+    before = review(job, house=own, on=day, devices=record)
 
-    again = partial(vary, before, house=house, on=day, devices=record)
+    again = partial(vary, before, house=own, on=day, devices=record)
     if not spans:
         found = again(singles)
         sys.stdout.write(in_json(found) if as_json else as_text(found, everything=everything))

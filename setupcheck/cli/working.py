@@ -8,6 +8,8 @@ from typing import Annotated
 
 import typer
 
+from setupcheck.cli.house import HouseFile, NoHouse, house_of
+
 
 def command(
     job: Annotated[Path, typer.Argument(metavar="JOB", help="Job file (YAML).", show_default=False)],
@@ -19,6 +21,8 @@ def command(
             show_default=False,
         ),
     ],
+    house: HouseFile = None,
+    no_house: NoHouse = False,
     record: Annotated[
         Path | None, typer.Option(help="CSV of what your shop's own devices gave.", show_default=False)
     ] = None,
@@ -27,11 +31,17 @@ def command(
 
     Example: setupcheck working jobs/index-plate.yaml require[1]
     """
-    from setupcheck.flow import load_job, prepare, with_devices
+    from setupcheck.flow import load_job, prepare, read_house, with_own
     from setupcheck.report.working import as_working
 
     loaded = load_job(job)
-    if record is not None:
-        loaded, _ = with_devices(loaded, record)
+    acts = house_of(job, house, leave=no_house)
+    own = read_house(acts) if acts is not None else None
+    if record is not None or own is not None:
+        loaded = with_own(loaded, record, own)[0]
     _, book = prepare(loaded)
+    if own is not None:
+        from setupcheck.report.house import house_line
+
+        sys.stdout.write("\n".join([*house_line(own), "", ""]))
     sys.stdout.write(as_working(loaded, book, quantity))

@@ -29,6 +29,9 @@ What = Literal[
     "squareness",
     "torque",
     "allowance",
+    "symmetry",
+    "flank-run-off",
+    "depth-run-off",
 ]
 
 

@@ -11,7 +11,8 @@ from pydantic import BaseModel
 from setupcheck.errors import JobError, Problem, SetupcheckError, printable
 from setupcheck.jobfile.models import Deviation, Dimension
 from setupcheck.jobfile.reading import LoadedJob, Loc, read_tree
-from setupcheck.jobfile.setups import Through, Touched
+from setupcheck.jobfile.setups import Through
+from setupcheck.jobfile.touched import Touched
 from setupcheck.notation import nearest, plain, quoted
 from setupcheck.record import record
 from setupcheck.yamlfile import Data, Node, Place, Tree, parse

@@ -18,7 +18,7 @@ _ERROR = {"at_most", "measured", "device"}
 
 
 def misplaced(drawing: Drawing) -> Iterator[Miss]:
-    """Every `indicator` away from the error of a hold, every `at_temperature` away from the diameter of a surface."""
+    """Every `indicator` and `known_at` away from a hold, every `at_temperature` away from the diameter of a surface."""
     yield from _within(drawing.data, ())
 
 
@@ -37,6 +37,12 @@ def _within(node: object, path: Path) -> Iterator[Miss]:
             yield Miss(
                 (*path, "indicator"),
                 "an indicator is read at the error of a hold only. Drop it, or name it at the hold",
+            )
+        of_a_chuck = _is_error_of_a_hold(path) and path[4] == "runout"
+        if "known_at" in node and node.keys() & _ERROR and not of_a_chuck:
+            yield Miss(
+                (*path, "known_at"),
+                "known_at is the diameter a chuck was tested on. Drop it, or write it at the run-out of a hold",
             )
         for key, entry in node.items():
             yield from _within(entry, (*path, key))

@@ -99,6 +99,7 @@ class Deviation(Shop):
     device       what held or measured it; alone it takes its typical value
     mark         `kept`: the part goes back the same way round in the same device, so it is one cause in several setups
     indicator    one division of the indicator that reads it [mm], at a hold
+    known_at     diameter on which a chuck or collet was tested so [mm], at the run-out of a hold
     """
 
     at_most: Bound | None = None
@@ -109,6 +110,7 @@ class Deviation(Shop):
     device: str | None = None
     mark: Literal["kept", "lost"] | None = None
     indicator: Division | None = None
+    known_at: Size | None = None
 
     @model_validator(mode="before")
     @classmethod
@@ -171,6 +173,7 @@ class Round(Shop):
     kind       what it is;  made  `stock`: the blank brings it;  roughness  with its figure, as in Rz 6.3 um
     diameter   with its limits or as measured [mm];  hole  through its middle, where it is hollow [mm]
     from, to   its two ends along the part [mm];  pitch  of a thread [mm]
+    to_diameter  of a taper at `to` [mm], `diameter` then being that at `from`
     """
 
     kind: Literal["cylinder", "bore", "taper", "thread"]
@@ -181,6 +184,13 @@ class Round(Shop):
     roughness: Roughness | None = None
     made: Literal["stock"] | None = None
     pitch: Size | None = None
+    to_diameter: Size | None = None
+
+    @model_validator(mode="after")
+    def only_a_taper_has_two_diameters(self) -> Self:
+        if self.to_diameter is not None and self.kind != "taper":
+            raise ValueError(f"a {self.kind} has one diameter. Drop to_diameter, or write kind: taper")
+        return self
 
     @model_validator(mode="after")
     def it_has_a_length(self, info: ValidationInfo) -> Self:
@@ -230,6 +240,7 @@ class Toothing(Shop):
     kind   what it is;  made  `stock`: the blank brings it;  count  of the teeth
     at     where the mid-plane stands along the part [mm];  width  of the face, half on either side [mm]
     on_circle  diameter of the pitch circle [mm];  module  [mm];  pressure_angle  of the flanks [rad]
+    cone   of a bevel: angle of its root cone to the axis [rad], `width` then lies along the cone
     """
 
     kind: Literal["teeth"]
@@ -239,6 +250,7 @@ class Toothing(Shop):
     width: Size | None = None
     pressure_angle: Angle | None = None
     module: Size | None = None
+    cone: Angle | None = None
     made: Literal["stock"] | None = None
 
 

@@ -3,11 +3,12 @@
 # Annotations are evaluated as they stand (no __future__ import): pydantic would have to compile each of them from its text.
 from typing import Annotated, Literal, Self
 
-from pydantic import BeforeValidator, Field, ValidationInfo, model_validator
+from pydantic import Field, ValidationInfo, model_validator
 
 from setupcheck.jobfile.asked import Checked, Require, Waive
 from setupcheck.jobfile.dividing import Divide
 from setupcheck.jobfile.heating import Heat
+from setupcheck.jobfile.holders import CHUCKED, JAWS, Device
 from setupcheck.jobfile.models import (
     Cutter,
     Dim,
@@ -20,7 +21,10 @@ from setupcheck.jobfile.models import (
 )
 from setupcheck.jobfile.prove_out import ProveOut
 from setupcheck.jobfile.service import JointService
+from setupcheck.jobfile.touched import DepthFrom, Scatter
+from setupcheck.jobfile.travel import Travel
 from setupcheck.jobfile.truing import Trued, check_it_is_loose
+from setupcheck.jobfile.turning import Turning
 from setupcheck.jobfile.types import (
     Angle,
     AngleBound,
@@ -39,30 +43,6 @@ from setupcheck.jobfile.types import (
     in_file_units,
 )
 from setupcheck.jobfile.worm import Mesh, Worm
-
-Device = Literal[
-    "three-jaw",
-    "four-jaw",
-    "soft-jaws",
-    "shimmed-jaws",
-    "collet",
-    "spigot",
-    "plain-mandrel",
-    "taper-mandrel",
-    "expanding-mandrel",
-    "centres",
-    "faceplate",
-    "edge-finder",
-    "indicator",
-    "fixture",
-    "vee-block",
-    "magnetic-chuck",
-    "pot-chuck",
-    "spindle",
-    "steady",
-]
-
-_JAWS = ("three-jaw", "four-jaw", "soft-jaws", "shimmed-jaws")
 
 
 class Through(Shop):
@@ -106,6 +86,7 @@ class Centre(Shop):
     x, y       readings of an edge finder or indicator along two machine axes, each ±
     grip       stretch of the surface that the jaws or the mandrel hold;  grip_force  of each jaw on the part [N]
     turned     where the part's mark stands from the device's mark;  through  devices that this one stands on
+    jaws_stand_out  how far the jaws reach beyond the body of the chuck [mm]
     """
 
     on: str
@@ -120,13 +101,20 @@ class Centre(Shop):
     grip_force: Force | None = None
     through: tuple[Through, ...] = ()
     turned: Angle | None = None
+    jaws_stand_out: Length | None = None
 
     @model_validator(mode="after")
-    def a_grip_force_is_that_of_one_jaw(self) -> Self:
-        if self.grip_force is not None and self.by not in _JAWS:
+    def what_is_said_of_a_chuck_belongs_to_one(self) -> Self:
+        if self.grip_force is not None and self.by not in JAWS:
             raise ValueError(
                 f"grip_force is the force of one jaw, and {self.by} is not held by jaws. Drop it, or write by: three-jaw"
             )
+        if self.jaws_stand_out is not None and self.by not in JAWS:
+            raise ValueError(f"jaws_stand_out is said of a chuck with jaws, and {self.by} has none. Drop it")
+        if self.jaws_stand_out is not None and self.jaws_stand_out < 0.0:
+            raise ValueError("jaws that end inside the chuck stand out by 0. Write jaws_stand_out: 0")
+        if self.runout is not None and self.runout.known_at is not None and self.by not in CHUCKED:
+            raise ValueError(f"known_at is the bar a chuck was tested on, and {self.by} is none. Drop it")
         if self.grip_force == 0.0:
             raise ValueError("a grip_force of nothing holds nothing. Write the force of one jaw, as in 2 kN")
         return self
@@ -249,36 +237,6 @@ class Head(Shop):
     mid_plane: MidPlane | None = None
 
 
-class Scatter(Shop):
-    """What each hole or tooth adds for itself, ±.
-
-    radial, tangential  from and round the axis [mm];  by  the tool that wanders
-    """
-
-    radial: Bound | None = None
-    tangential: Bound | None = None
-    by: str | None = None
-
-
-class Touched(Shop):
-    """The surface the depth is counted from, its diameter as measured or how far it may be off, and how it is touched.
-
-    surface  the one that is touched;  measured  its diameter [mm];  uncertainty  of that, expanded, k = 2 [mm]
-    at_most  how far its diameter may be from the drawing, either way [mm]
-    tool     `standing` (tip in the mid-plane) or `turning` (a turning cutter meets the corners of a throat first)
-    """
-
-    surface: str
-    measured: Size | None = None
-    uncertainty: Bound | None = None
-    at_most: Bound | None = None
-    tool: Literal["standing", "turning"] | None = None
-
-
-DepthFrom = Annotated[Touched, BeforeValidator(lambda g: {"surface": g} if isinstance(g, str) else g)]
-"""A surface's name alone, or what is known of its diameter beside it."""
-
-
 class Cut(Shop):
     """One surface cut in a setup. An empty map finishes it to its drawing size.
 
@@ -293,6 +251,7 @@ class Cut(Shop):
     finishing_cut      thinnest cut that the tool still takes, on the radius [mm]
     form               error of the old surface's form, on the radius [mm]
     each               what each hole or tooth adds for itself
+    off_centre         how far the middle of the cutter stands beside the axis that gaps are indexed about
     cutter             one of `cutters`;  tool_change_after  so many gaps of all passes
     depth              of a gap [mm];  depth_error  of it [mm];  depth_from  the surface it is counted from
     passes             depths that are cut one after the other, together the whole depth [mm]
@@ -315,6 +274,7 @@ class Cut(Shop):
     passes: tuple[Size, ...] = ()
     prove_out: ProveOut | None = None
     each: Scatter | None = None
+    off_centre: Error | None = None
     spindle_to_axis: dict[Literal["x", "y"], Dim] | None = None
     tool_change_after: Whole | None = Field(default=None, ge=1)
 
@@ -382,7 +342,8 @@ class Setup(Shop):
     op     its number;  note  for people;  machine  one of `machines`, or its kind;  part  that is held
     looks_at_tool  the end of the part that faces the tool
     hold   how the part is held;  keeps  instead, the operation whose holding was never opened
-    head   its tilt;  divide  how the circle is divided;  cut  each surface that is cut, by its name
+    head   its tilt;  travel  how the work's axis lies to it;  turning  what turns with the spindle, and how fast
+    divide  how the circle is divided;  cut  each surface that is cut, by its name
     join   two parts put together
     """
 
@@ -394,7 +355,9 @@ class Setup(Shop):
     keeps: Whole | None = None
     hold: Hold | None = None
     head: Head | None = None
+    travel: Travel | None = None
     divide: Divide | None = None
+    turning: Turning | None = None
     cut: dict[str, Cut] = Field(default_factory=dict)
     join: Join | None = None
 

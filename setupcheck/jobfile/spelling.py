@@ -10,7 +10,19 @@ from typing import Annotated, Any, get_args, get_origin
 
 from pydantic import BaseModel
 
-from setupcheck.jobfile import asked, backlash_read, dividing, grinding, marks, models, service, setups, types, worm
+from setupcheck.jobfile import (
+    asked,
+    backlash_read,
+    dividing,
+    grinding,
+    marks,
+    models,
+    service,
+    setups,
+    touched,
+    types,
+    worm,
+)
 
 Schema = dict[str, Any]
 
@@ -71,6 +83,7 @@ _TYPES: tuple[tuple[object, Schema], ...] = (
     (types.Volume, _text("a volume", "40 m3")),
     (types.Coolant, _text("litres of nitrogen or kilograms of dry ice", "5 l", "2 kg")),
     (types.Force, _text("a force", "2 kN", "500 N")),
+    (types.Mass, _text("a mass", "0.5 kg", "300 g")),
     (types.Speed, _text("a speed", "300 rpm")),
     (types.Fraction, _number("a share, as a percentage or below 1", "95 %", 0.95)),
     (types.Limit, _LIMIT),
@@ -120,7 +133,7 @@ PLAIN: dict[type[BaseModel], Schema] = {
     worm.Thickness: _DIMENSION,
     models.Deviation: _BOUND,
     setups.Through: {"title": "a device", "type": "string", "examples": ["centres"]},
-    setups.Touched: {"title": "a surface", "type": "string", "examples": ["throat"]},
+    touched.Touched: {"title": "a surface", "type": "string", "examples": ["throat"]},
 }
 """Records that a single value may stand for, wherever they stand."""
 

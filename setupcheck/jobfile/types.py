@@ -260,6 +260,8 @@ Coolant = Annotated[Amount, _plain(_coolant)]
 """What boils off: litres of liquid nitrogen [m3] or a mass of dry ice [kg]."""
 Force = Annotated[float, _plain(notation.force)]
 """A force [N]; the unit must be written."""
+Mass = Annotated[float, _plain(notation.mass)]
+"""A mass [kg]; the unit must be written."""
 Speed = Annotated[float, _plain(notation.speed)]
 """[rev/min]"""
 Fraction = Annotated[float, BeforeValidator(lambda given: notation.fraction(scalar(given)))]

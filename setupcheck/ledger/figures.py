@@ -7,6 +7,7 @@ at its known value (`base`), and its value for a set of draws (`sample`). worst 
 from __future__ import annotations
 
 import math
+from collections.abc import Callable
 from dataclasses import field
 from typing import TYPE_CHECKING, Protocol
 
@@ -386,6 +387,9 @@ class FaceStock:
 
 def alternatives(figure: Figure) -> tuple[Figure, ...]:
     """The places a figure is the worst of, each as a figure of its own; itself where there is only one."""
+    places: Callable[[], tuple[Figure, ...]] | None = getattr(figure, "places", None)
+    if places is not None:
+        return places()
     if isinstance(figure, Vector) and len(figure.accounts) > 1:
         return tuple(Vector((a,), figure.factor) for a in figure.accounts)
     if isinstance(figure, Stock) and len(figure.offsets) > 1:

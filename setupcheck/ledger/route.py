@@ -71,6 +71,9 @@ class Pattern:
     outwards        known radial errors of the single places [mm], one per place, or empty
     shaped          real causes [rad] with their share at each place
     radial          account of an error of the pattern radius itself [mm]
+    aside           real account of how far every gap's middle stands beside the axis it is indexed about [mm]
+    off_sideways    real account of the angle by which every gap runs off that axis sideways [rad]
+    off_deep        the same towards its bottom: a gap that grows deeper to one end [rad]
     """
 
     count: int
@@ -84,6 +87,9 @@ class Pattern:
     outwards: tuple[float, ...] = ()
     shaped: tuple[Shaped, ...] = ()
     radial: Account = field(default_factory=Account)
+    aside: Account = field(default_factory=Account)
+    off_sideways: Account = field(default_factory=Account)
+    off_deep: Account = field(default_factory=Account)
 
     def angle(self, number: float) -> float:
         """Direction of place `number` (1 = first cut) in the part frame [rad]."""

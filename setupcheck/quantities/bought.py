@@ -86,7 +86,7 @@ def _related(
         assert relation.across is not None
         lean = face_lean(
             relation.face_runout,
-            Entry(f"{label}: face run-out", None, f"{path}.face_runout", "face_runout"),
+            Entry(f"{label}: face run-out", None, f"{path}.face_runout", "", "face_runout"),
             across=relation.across,
             facing=shape.facing or 1,
             towards=stated_direction(relation.face_runout.high_at),

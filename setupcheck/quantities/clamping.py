@@ -58,7 +58,7 @@ def _held_in(floor: Floor, op: int) -> list[Setup]:
     return found
 
 
-def _taken_by(floor: Floor, setup: Setup) -> Setup:
+def taken_by(floor: Floor, setup: Setup) -> Setup:
     """The setup that took the part which this one cuts."""
     while setup.keeps is not None:
         setup = _setup(floor, setup.keeps)
@@ -87,7 +87,7 @@ def _standing(floor: Floor, part: str, op: int, last: int) -> list[State]:
     return found
 
 
-def _gripped(floor: Floor, op: int, centre: Centre) -> State | None:
+def gripped(floor: Floor, op: int, centre: Centre) -> State | None:
     """The round surface that jaws or a collet hold, as it is when they close."""
     setup = _setup(floor, op)
     part = floor.part_of[op]
@@ -142,7 +142,7 @@ def grip_wanted(floor: Floor, entry: HoldEntry, op: int) -> float | None:
     from setupcheck.physics import clamping
 
     centre = _centre(entry, JAWS)
-    state = _gripped(floor, op, centre) if centre is not None else None
+    state = gripped(floor, op, centre) if centre is not None else None
     if state is None or state.diameter is None:
         return None
     there = _standing(floor, state.part, op, _held_in(floor, op)[-1].op)
@@ -157,11 +157,11 @@ def overhang(floor: Floor, entry: CutEntry, op: int) -> float | None:
 
     None where nothing is said of the grip, or a centre or steady carries the part.  Source: common practice.
     """
-    setup = _taken_by(floor, _setup(floor, op))
+    setup = taken_by(floor, _setup(floor, op))
     centre = setup.hold.centre if setup.hold is not None else None
     if centre is None or centre.by not in CHUCKS or centre.grip is None or _supported(setup):
         return None
-    state = _gripped(floor, setup.op, centre)
+    state = gripped(floor, setup.op, centre)
     name = entry.name.rpartition(".")[2]
     cut = [s for states in floor.body(floor.part_of[op]).states.values() for s in states if s.op == op]
     cut = [s for s in cut if s.name == name]
@@ -195,7 +195,7 @@ def ring(floor: Floor, entry: HoldEntry, op: int) -> Ring | None:
     Source: sizes of the job file.
     """
     centre = _centre(entry, JAWS)
-    state = _gripped(floor, op, centre) if centre is not None else None
+    state = gripped(floor, op, centre) if centre is not None else None
     if centre is None or state is None or state.diameter is None or not _finished_round(floor, op):
         return None
     if len(_one_piece(floor, state.part, op)) > 1:

@@ -49,3 +49,6 @@ DEVICES: dict[str, Device] = {
     "spindle": Device("in its own bearings"),
 }
 """Source of the rows: common practice."""
+
+DIALLED = ("four-jaw", "indicator", "faceplate")
+"""In these a part is trued by its dial: another datum keeps the reading, a finer dial makes it truer. Common practice."""

@@ -20,6 +20,7 @@ class DialEntry:
     name   of a hold `40/centre`, else the path;  path  in the job file;  key  its last step
     step   centre, and_centre, square, trued, through, fit, sets, bought, bought-face or machine;  on  what the dial runs on
     planned  what the entry says now: measured, planned, or the typical reading of its device [mm]
+    device   what holds it, as the job file has it, or empty
     """
 
     name: str
@@ -30,6 +31,7 @@ class DialEntry:
     on: str
     given: Deviation
     planned: float
+    device: str = ""
 
 
 def dial_entries(scopes: Sequence[Scope]) -> Iterator[DialEntry]:
@@ -56,7 +58,7 @@ def _of_hold(scope: Scope, entry: HoldEntry) -> Iterator[DialEntry]:
         return
     path, device = f"{scope.path}.{entry.key}", str(getattr(entry.entry, "by", "") or "")
     for one in _made(path, scope.op, entry.step, entry.entry.on, entry.error, device):
-        yield DialEntry(scope.key, path, entry.key, one.op, one.step, one.on, one.given, one.planned)
+        yield DialEntry(scope.key, path, entry.key, one.op, one.step, one.on, one.given, one.planned, device)
     if isinstance(entry.entry, Centre):
         for number, below in enumerate(entry.entry.through, 1):
             where = f"{scope.path}.through[{number}].runout"
@@ -83,7 +85,7 @@ def _made(
         row = typical(given.device or device, key)
         planned = row.value if row is not None else None
     if planned is not None:
-        yield DialEntry(path, path, key, op, step, on, given, planned)
+        yield DialEntry(path, path, key, op, step, on, given, planned, device)
 
 
 def _own(text: str) -> str:

@@ -272,6 +272,9 @@ def _hold_fact(floor: Floor, scope: Scope, setup: Setup | None, field: str) -> F
         return None
     if field == "by":
         return getattr(entry, "by", None)
+    if field == "jaws_stand_out":
+        out = getattr(entry, "jaws_stand_out", None)
+        return out > 0.0 if out is not None else None
     ref = _ref(floor, scope, setup)
     return floor.loaded.job.parts[ref.part].surfaces[ref.surface].kind if ref is not None else None
 

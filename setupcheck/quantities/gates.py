@@ -55,6 +55,7 @@ class Gate:
     paths     the entries of the job file, one for each operation it serves
     limits    what each requirement allows by itself, the tightest first
     indicator one division of the indicator that reads it [mm], 0 where the entry names none
+    careful   somebody trues it by hand for this part: in a four-jaw, by indicator, or it has been measured
     """
 
     key: str
@@ -71,6 +72,7 @@ class Gate:
     paths: tuple[str, ...] = ()
     limits: tuple[Limit, ...] = ()
     indicator: float = 0.0
+    careful: bool = False
 
     @property
     def keys(self) -> tuple[str, ...]:
@@ -174,12 +176,22 @@ def gates(scopes: Sequence[Scope], results: Sequence[tuple[str, Result]]) -> lis
     return found
 
 
+def is_careful(entry: DialEntry) -> bool:
+    """Whether the entry of a hold takes work with an indicator each time the part is set up. Source: common practice."""
+    if entry.step not in ("centre", "and_centre", "square"):
+        return False
+    trued = entry.device.startswith(("four-jaw", "indicator"))
+    return trued or entry.given.measured is not None or entry.given.indicator is not None
+
+
 def kept_as(entry: DialEntry) -> str:
     """Name of the one cause of a device whose mark is kept; empty for every other entry."""
     given = entry.given
     if not (given.device and given.mark == "kept"):
         return ""
-    what = {"square": "face_runout", "machine": "axis"}.get(entry.step, "runout")  # as the route names these causes
+    what = {"square": "face_runout", "bought-face": "face_runout", "machine": "axis"}.get(
+        entry.step, "runout"
+    )  # as the route names these causes
     return kept_key(given, what, second=entry.step == "and_centre")
 
 
@@ -247,6 +259,7 @@ def _gate(floor: Floor, entry: DialEntry, kept: str, behind: Sequence[Behind]) -
         paths=(entry.path,),
         limits=tuple(limits),
         indicator=given.indicator or 0.0,
+        careful=is_careful(entry),
     )
 
 

@@ -26,7 +26,10 @@ KNOWN_TO = 0.1
 """Share of its bound to which a measured cause is then known, expanded, k = 2. Source: our screening choice."""
 MOST_NEXT = 3
 """Measurements that are named. Source: our screening choice."""
-_TO_BE_TRUED = ("runout", "face_runout", "x", "y", "clearance", "error", "depth_error", "fit_error", "length")
+_TO_BE_TRUED = (
+    "runout", "face_runout", "x", "y", "clearance", "error", "depth_error", "fit_error", "length", "off_centre", "beside",
+    "nearer",
+)  # fmt: skip
 """Keys of holds and lengths: what a setter can stop refining."""
 
 

@@ -5,7 +5,7 @@ from __future__ import annotations
 from setupcheck.jobfile.models import Flat, Round, Surface
 from setupcheck.jobfile.reading import LoadedJob
 from setupcheck.jobfile.setups import Setup
-from setupcheck.quantities.orders import bare, cut_in, part_of
+from setupcheck.quantities.sharing import bare, cut_in, part_of
 from setupcheck.record import record
 
 

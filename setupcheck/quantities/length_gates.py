@@ -11,7 +11,10 @@ from functools import partial
 from setupcheck.errors import JobError
 from setupcheck.jobfile.models import Deviation, Dimension, Distance, Relation
 from setupcheck.jobfile.reading import LoadedJob
-from setupcheck.jobfile.setups import Clock, Cut, MidPlane, Spacer, Stop, Touched
+from setupcheck.jobfile.setups import Clock, Cut, MidPlane, Spacer, Stop
+from setupcheck.jobfile.touched import Touched
+from setupcheck.jobfile.travel import Travel
+from setupcheck.jobfile.types import size_shown
 from setupcheck.ledger.causes import Cause
 from setupcheck.ledger.running import AsItRuns
 from setupcheck.quantities.book import OutOfRange
@@ -32,7 +35,7 @@ STRIDES = (0.02, 0.08, 0.32)
 MOST_STEPS = 60
 """Of a search by halves. Source: our choice."""
 
-_ERROR = re.compile(r"\.(error|depth_error)$")
+_ERROR = re.compile(r"\.(error|depth_error|off_centre|beside|nearer)$")
 _SIZE = re.compile(r"\.spacers\[\d+\]\.length$|^parts\..*\.given\[\d+\]\.length$|^place\.worm_axis\.length$")
 """Sizes whose measured value moves a figure as their error does. Source: the ledger (`size_error` in quantities)."""
 
@@ -171,6 +174,11 @@ def _words(loaded: LoadedJob, path: str) -> str:
         return f"{where}mid-plane found"
     if path.endswith(".depth_from") and isinstance(parent, Cut) and parent.depth_from is not None:
         return f"{where}{parent.depth_from.surface} as touched"
+    if isinstance(parent, Travel):
+        side = "sideways" if path.endswith(".beside") else "towards the cutter"
+        return f"{where}work off the cutter's travel {side} over {size_shown(parent.over, loaded.job.units)}"
+    if path.endswith(".off_centre"):
+        return f"{where}cutter of {name} beside the axis"
     return f"{where}{'depth' if path.endswith('.depth_error') else 'length'} of {name}"
 
 

@@ -11,6 +11,7 @@ from setupcheck.jobfile.reading import LoadedJob
 from setupcheck.jobfile.setups import Setup
 from setupcheck.quantities.finished import finished
 from setupcheck.quantities.proposals import NO_LOSS, Editor, Idea, Proposal, offered
+from setupcheck.quantities.sharing import bare, cut_in, may_share
 from setupcheck.quantities.trials import Bench
 from setupcheck.yamlfile import Data
 
@@ -21,7 +22,7 @@ def orders(bench: Bench, key: str) -> Iterator[Proposal]:
     for first, second in zip(job.setups, job.setups[1:], strict=False):
         if first.op in gone or second.op in gone:
             continue
-        if _may_share(bench.loaded, first, second):
+        if may_share(bench.loaded, first, second):
             found = _merged(bench, key, first, second)
             if found is not None:
                 yield found
@@ -55,26 +56,6 @@ def _merged(bench: Bench, key: str, first: Setup, second: Setup) -> Proposal | N
     return found if loses else replace(found, saves=1)
 
 
-def _may_share(loaded: LoadedJob, first: Setup, second: Setup) -> bool:
-    """Whether one holding can cut both: same machine, same part, same end to the tool, and nothing cut that it is held by.
-
-    A tilted head or another way of dividing is another setting of the machine, not another cut.
-    """
-    holder = next((s for s in loaded.job.setups if s.op == first.keeps), first)
-    if second.hold is None or holder.hold is None or not first.cut or not second.cut:
-        return False
-    if any(s.head is not None or s.divide is not None for s in (first, second)):
-        return False
-    if (holder.machine, part_of(loaded, holder), holder.looks_at_tool) != (
-        second.machine,
-        part_of(loaded, second),
-        second.looks_at_tool,
-    ):
-        return False
-    held = {bare(loaded, on, holder) for on in held_on(holder)}
-    return not held & cut_in(loaded, second)
-
-
 def _may_swap(loaded: LoadedJob, first: Setup, second: Setup) -> bool:
     """Whether two setups can change places: neither joins or keeps a holding, nothing names them, neither needs the other's cut.
 
@@ -96,30 +77,6 @@ def _may_swap(loaded: LoadedJob, first: Setup, second: Setup) -> bool:
     }
     gone = {bare(loaded, name, first) for cut in first.cut.values() for name in cut.removes}
     return not (mine & theirs) and not (needs & mine) and not (gone & (theirs | needs))
-
-
-def part_of(loaded: LoadedJob, setup: Setup) -> str:
-    """The part a setup holds."""
-    return setup.part if setup.part is not None else loaded.ref(next(iter(setup.cut)), setup.part).part
-
-
-def bare(loaded: LoadedJob, name: str, setup: Setup) -> tuple[str, str]:
-    """(part, surface) that a name means in a setup."""
-    own = part_of(loaded, setup) if "." not in name else setup.part
-    known = own is not None and name.partition("@")[0] in loaded.job.parts[own].surfaces
-    ref = loaded.ref(name, own if known else setup.part)
-    return ref.part, ref.surface
-
-
-def cut_in(loaded: LoadedJob, setup: Setup) -> set[tuple[str, str]]:
-    """Surfaces that a setup cuts."""
-    return {bare(loaded, name, setup) for name in setup.cut}
-
-
-def held_on(setup: Setup) -> list[str]:
-    """Surfaces that a setup is held on, its clock included."""
-    entries = [getattr(setup.hold, step) for step in ("centre", "and_centre", "square", "stop", "clock")]
-    return [entry.on for entry in entries if entry is not None]
 
 
 def _texts(data: Data) -> Iterator[str]:

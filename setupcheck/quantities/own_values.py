@@ -1,4 +1,4 @@
-"""A shop's record of devices put into a job: its limits stand where typical values would. mm, rad, K."""
+"""A shop's record of devices, and its house values, put into a job: they stand where typical values would. mm, rad, K."""
 
 from __future__ import annotations
 
@@ -15,7 +15,7 @@ from setupcheck.jobfile.setups import Head, Job, Setup
 from setupcheck.quantities.device_record import DeviceRecord, Series
 from setupcheck.quantities.dividing import has_own_errors, typical_errors
 from setupcheck.quantities.route import machine_of
-from setupcheck.quantities.typical import own_name
+from setupcheck.quantities.typical import house_name, own_name
 from setupcheck.record import record
 
 OF_KEY: Mapping[str, tuple[str, ...]] = {
@@ -25,6 +25,9 @@ OF_KEY: Mapping[str, tuple[str, ...]] = {
     "axis_runout": ("axis",),
     "error": ("position", "touch", "reading"),
     "depth_error": ("position", "touch", "reading"),
+    "off_centre": ("position", "touch", "reading"),
+    "beside": ("reading",),
+    "nearer": ("reading",),
 }
 """What an error entry that names a device may take from its record, first found. Source: as typical values are taken."""
 
@@ -55,6 +58,56 @@ class RecordUse:
     uses: tuple[Use, ...]
 
 
+@record
+class HouseRow:
+    """A house's own value of a device, or of a kind of device [mm, rad or K by `what`]."""
+
+    device: str
+    what: str
+    value: float
+
+
+@record(eq=False)
+class HouseRows:
+    """All of them, and the name of the house."""
+
+    house: str
+    rows: tuple[HouseRow, ...]
+
+    def of(self, device: str | None, what: str) -> HouseRow | None:
+        """The row of a device, or of the kind its name begins with, as typical values are found; the longest name wins."""
+        if device is None:
+            return None
+        mine = [
+            row
+            for row in self.rows
+            if row.what == what and (device == row.device or device.startswith(f"{row.device}-"))
+        ]
+        return max(mine, key=lambda row: len(row.device), default=None)
+
+
+@record
+class HouseUse:
+    """A house value that was taken, and the path it stands at."""
+
+    path: str
+    row: HouseRow
+
+
+def with_own(
+    loaded: LoadedJob, found: DeviceRecord | None, values: HouseRows
+) -> tuple[LoadedJob, RecordUse | None, tuple[HouseUse, ...]]:
+    """The job with what a record says of its devices, and with house values where the record says nothing.
+
+    A device's own record stands before the house's value of its kind. What is measured or stated in the job stays as it is.
+    """
+    filling = _Filling(loaded, found, values)
+    job = filling.job()
+    own = {**loaded.own, **filling.own}
+    used = RecordUse(found, tuple(filling.uses)) if found is not None else None
+    return replace(loaded, job=job, own=own), used, tuple(filling.of_house)
+
+
 def with_record(loaded: LoadedJob, found: DeviceRecord) -> tuple[LoadedJob, RecordUse]:
     """The job with the record's limits put where it names a device, or a machine, and states no value of its own.
 
@@ -63,18 +116,19 @@ def with_record(loaded: LoadedJob, found: DeviceRecord) -> tuple[LoadedJob, Reco
     makes or reads them.  A thin record, or one all alike, gives nothing and the typical value stays.  What is measured or
     stated in the job stays as it is.
     """
-    filling = _Filling(loaded, found)
-    job = filling.job()
-    own = {**loaded.own, **filling.own}
-    return replace(loaded, job=job, own=own), RecordUse(found, tuple(filling.uses))
+    filled, used, _ = with_own(loaded, found, HouseRows("", ()))
+    assert used is not None
+    return filled, used
 
 
 class _Filling:
-    """One pass over a job; `own` and `uses` grow on the way."""
+    """One pass over a job; `own`, `uses` and `of_house` grow on the way."""
 
-    def __init__(self, loaded: LoadedJob, found: DeviceRecord) -> None:
+    def __init__(self, loaded: LoadedJob, found: DeviceRecord | None, values: HouseRows) -> None:
         self.loaded = loaded
         self.record = found
+        self.values = values
+        self.of_house: list[HouseUse] = []
         self.own: dict[str, str] = {}
         self.uses: list[Use] = []
 
@@ -89,8 +143,19 @@ class _Filling:
         setups = tuple(self._setup(setup, machines) for setup in job.setups)
         return _changed(job, {**new, "machines": machines, "setups": setups})
 
-    def take(self, path: str, names: tuple[str | None, ...], whats: tuple[str, ...]) -> float | None:
-        """The limit for an entry, by the first of the names and whats that the record keeps."""
+    def take(
+        self, path: str, names: tuple[str | None, ...], whats: tuple[str, ...], kind: str | None = None
+    ) -> float | None:
+        """The limit for an entry, by the first of the names and whats that the record keeps, else the house's value.
+
+        kind  of the thing, which a house value may be of and a record never is
+        """
+        limit = self._recorded(path, names, whats)
+        return limit if limit is not None else self._house(path, (*names, kind), whats)
+
+    def _recorded(self, path: str, names: tuple[str | None, ...], whats: tuple[str, ...]) -> float | None:
+        if self.record is None:
+            return None
         series = next((s for name in names for what in whats if (s := self.record.of(name, what)) is not None), None)
         if series is None:
             return None
@@ -99,6 +164,14 @@ class _Filling:
         if limit is not None:
             self.own[path] = own_name(series.name, len(series.entries))
         return limit
+
+    def _house(self, path: str, names: tuple[str | None, ...], whats: tuple[str, ...]) -> float | None:
+        row = next((r for name in names for what in whats if (r := self.values.of(name, what)) is not None), None)
+        if row is None:
+            return None
+        self.own[path] = house_name(f"{row.device} {row.what.replace('_', ' ')}", self.values.house)
+        self.of_house.append(HouseUse(path, row))
+        return row.value
 
     def _within(self, node: object, path: str) -> object:
         """The node with every error entry below it that names a device and no value."""
@@ -154,7 +227,7 @@ class _Filling:
         path = f"machines.{name}.axis_runout"
         if path in self.own or any(use.path == path for use in self.uses):
             return
-        limit = self.take(path, (name,), ("axis",))
+        limit = self.take(path, (name,), ("axis",), machine.kind)
         if limit is not None:
             given = Deviation.model_construct(at_most=limit, device=name)
             machines[name] = _changed(machines.get(name, machine), {"axis_runout": given})

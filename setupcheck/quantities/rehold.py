@@ -10,18 +10,17 @@ from setupcheck.jobfile.models import Deviation, Flat, Round
 from setupcheck.jobfile.reading import LoadedJob
 from setupcheck.jobfile.setups import Centre, Setup
 from setupcheck.notation import plain
+from setupcheck.quantities.devices import DIALLED
 from setupcheck.quantities.finished import finished
 from setupcheck.quantities.gates import origins, reaches
 from setupcheck.quantities.holdable import Standing, faces, rounds, standing_before
-from setupcheck.quantities.orders import cut_in
 from setupcheck.quantities.proposals import Editor, Idea, Proposal, dial, offered
 from setupcheck.quantities.route import machine_of
+from setupcheck.quantities.sharing import cut_in
 from setupcheck.quantities.trials import Bench
 from setupcheck.quantities.typical import typical
 from setupcheck.record import record
 
-TRUED = ("four-jaw", "indicator", "faceplate")
-"""Devices in which a part is trued by its dial, so that another datum keeps the reading."""
 JAWS = ("three-jaw", "soft-jaws", "shimmed-jaws", "collet", "pot-chuck")
 """Devices whose part can be trued in a four-jaw chuck instead."""
 SHORT = 2.0
@@ -134,16 +133,16 @@ def centre_move(
     shortly  only a narrow band, which no jaw holds
     """
     name = one.called(part)
-    if name == now.on and now.by in TRUED:
+    if name == now.on and now.by in DIALLED:
         return None  # it is trued on it already
     _, machine = machine_of(loaded, setup)
     turned = machine is None or machine.kind in ("lathe", "grinder")
     jaws = now.by in JAWS or now.by == "four-jaw"
     by = "four-jaw" if jaws and turned and node.kind == "cylinder" and not shortly else "indicator"
-    if now.by in TRUED and now.by != "four-jaw":
+    if now.by in DIALLED and now.by != "four-jaw":
         by = now.by
     row = typical(by, "runout")
-    own = bound_of(now.runout) if now.by in TRUED else None
+    own = bound_of(now.runout) if now.by in DIALLED else None
     reading = own if own is not None else row.value if row is not None else None
     if reading is None:
         return None

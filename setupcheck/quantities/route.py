@@ -25,6 +25,7 @@ from setupcheck.quantities.causes import (
     stated_direction,
 )
 from setupcheck.quantities.dividing import divided, table_turn
+from setupcheck.quantities.gaps import askew
 from setupcheck.quantities.holding import Held, held_placing
 from setupcheck.quantities.joining import gap_after_cooling
 from setupcheck.quantities.shop import Body, Floor, outline, tooth_pattern, unknown_surface
@@ -143,8 +144,13 @@ def _cut(floor: Floor, held: Held, placing: Placing, name: str, cut: Cut) -> Non
             on_table=on_table,
             holes=node.kind in ("holes", "slot", "lines"),
         )
-        target = replace(target, pattern=pattern)
         turn = table_turn(cut, op=op, name=name, radius=fresh.radius, on_table=on_table)
+        if node.kind in ("teeth", "slot"):
+            at_table = turn * fresh.radius if on_table or cut.spindle_to_axis else None
+            lies = askew(setup, cut, name, node, radius=fresh.radius, table_y=at_table)
+            pattern = replace(pattern, aside=lies.aside, off_sideways=lies.off_sideways, off_deep=lies.off_deep)
+            turn += lies.clock
+        target = replace(target, pattern=pattern)
     state = route.cut(
         placing,
         replace(target, op=op),

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import math
 from dataclasses import field, replace
 
 from setupcheck.errors import JobError, Problem
@@ -123,12 +124,15 @@ class Outline:
 def outline(surface: Surface) -> Outline:
     """Nominal shape as the drawing has it [mm]."""
     if isinstance(surface, Round):
-        return Outline(surface.kind, surface.low, surface.high, surface.diameter.value, 0)
+        larger = max(surface.diameter.value, surface.to_diameter or 0.0)  # of a taper: what meets least stock outside
+        return Outline(surface.kind, surface.low, surface.high, larger, 0)
     if isinstance(surface, Flat):
         return Outline(surface.kind, surface.at, surface.at, surface.diameter, surface.facing)
     if isinstance(surface, Throat):
         return Outline("throat", surface.at, surface.at, surface.diameter, 0)
-    half = (surface.width or 0.0) / 2.0 if isinstance(surface, Toothing) else 0.0  # a slot's width lies round the part
+    half = 0.0  # a slot's width lies round the part
+    if isinstance(surface, Toothing):
+        half = (surface.width or 0.0) / 2.0 * math.cos(surface.cone or 0.0)
     return Outline(surface.kind, surface.at - half, surface.at + half, surface.on_circle, 0)
 
 

@@ -14,6 +14,7 @@ from setupcheck.quantities.backlash import backlash
 from setupcheck.quantities.book import Open
 from setupcheck.quantities.causes import BARE
 from setupcheck.quantities.contact_share import contact
+from setupcheck.quantities.gaps import figure as of_gaps
 from setupcheck.quantities.mid_plane import mid_plane
 from setupcheck.quantities.relations import Built, pair, second_order, state
 from setupcheck.quantities.requirements import Stack
@@ -338,4 +339,7 @@ _FIGURES: dict[str, Callable[[Floor, Stack], Built | Open]] = {
     "contact-area": contact,
     "contact-length": contact,
     "torque": torque,
+    "symmetry": of_gaps,
+    "flank-run-off": of_gaps,
+    "depth-run-off": of_gaps,
 }

@@ -10,6 +10,7 @@ from setupcheck.quantities.book import Quantity
 from setupcheck.quantities.chilling import CHILLING
 from setupcheck.quantities.choosing import CHOOSING
 from setupcheck.quantities.clamping import CLAMP
+from setupcheck.quantities.cones import CONES
 from setupcheck.quantities.contact import CONTACT
 from setupcheck.quantities.contact_advice import CONTACT_ADVICE
 from setupcheck.quantities.contact_setting import CONTACT_SETTING
@@ -31,6 +32,7 @@ from setupcheck.quantities.joint_heat import HEAT
 from setupcheck.quantities.joint_states import IN_STATES
 from setupcheck.quantities.keyways import KEYWAYS
 from setupcheck.quantities.marking import MARK
+from setupcheck.quantities.measure_first import MEASURE_FIRST
 from setupcheck.quantities.measuring import MEASURE
 from setupcheck.quantities.meshing import MESHING
 from setupcheck.quantities.opening import OPENING
@@ -39,6 +41,7 @@ from setupcheck.quantities.placing import PLACE
 from setupcheck.quantities.pressing import PRESSING
 from setupcheck.quantities.progress import PROGRESS
 from setupcheck.quantities.prove_out import PROVE
+from setupcheck.quantities.sharing import SHARING
 from setupcheck.quantities.stated import STATED
 from setupcheck.quantities.strength import STRENGTH
 from setupcheck.quantities.then_now import THEN_NOW
@@ -46,6 +49,8 @@ from setupcheck.quantities.thread import THREAD
 from setupcheck.quantities.through import THROUGH
 from setupcheck.quantities.tilting import TILT
 from setupcheck.quantities.truing import TRUING
+from setupcheck.quantities.turning import TURNING
+from setupcheck.quantities.usual import USUAL
 from setupcheck.quantities.ways import WAYS
 from setupcheck.quantities.wheel_over_balls import OVER_BALLS
 from setupcheck.quantities.wheel_sizes import WHEEL
@@ -286,11 +291,14 @@ TABLES: tuple[Quantity, ...] = (
     *ROUTE,
     *STACK,
     *HOLD,
+    *USUAL,
+    *SHARING,
     *ALLOW,
     *DIVIDE,
     *WAYS,
     *INDEX_TABLE,
     *TILT,
+    *CONES,
     *HEAD,
     *JOINING,
     *KEYWAYS,
@@ -327,7 +335,9 @@ TABLES: tuple[Quantity, ...] = (
     *PLACE,
     *ADVICE,
     *CLAMP,
+    *TURNING,
     *MEASURE,
+    *MEASURE_FIRST,
     *THEN_NOW,
     *PROGRESS,
     *PROVE,

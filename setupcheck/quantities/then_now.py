@@ -10,7 +10,8 @@ from pydantic import BaseModel
 from setupcheck.errors import JobError
 from setupcheck.jobfile.models import Cutter, Deviation, Dimension
 from setupcheck.jobfile.reading import LoadedJob
-from setupcheck.jobfile.setups import Job, Touched
+from setupcheck.jobfile.setups import Job
+from setupcheck.jobfile.touched import Touched
 from setupcheck.jobfile.worm import Mesh
 from setupcheck.ledger.causes import Cause
 from setupcheck.ledger.combine import Draws

@@ -5,6 +5,7 @@ from __future__ import annotations
 from setupcheck.jobfile.reading import LoadedJob
 from setupcheck.jobfile.setups import Setup
 from setupcheck.quantities.book import Known, Open, Quantity, in_range
+from setupcheck.quantities.cones import bevel_of
 from setupcheck.quantities.route import machine_of
 from setupcheck.quantities.shop import Floor
 from setupcheck.quantities.typical import head_uncertainty
@@ -52,11 +53,11 @@ def error(set_angle: float, needed_angle: float) -> float:
 
 
 def allowed(floor: Floor, setup: Setup) -> Known | Open | None:
-    """How finely the head can be set [rad]: a planned angle may miss the lead angle by no more.
+    """How finely the head can be set [rad]: a planned angle may miss the lead angle, or the root cone, by no more.
 
     Source: the job file; where it names only the way of setting (`by`), the typical value of that way.
     """
-    if not cuts_the_wheel(floor.loaded, setup):
+    if not cuts_the_wheel(floor.loaded, setup) and bevel_of(floor.loaded, setup) is None:
         return None
     found = head_uncertainty(setup.head) if setup.head is not None else None
     if found is None:

@@ -13,8 +13,9 @@ from setupcheck.shipped import shipped
 from setupcheck.yamlfile import Data, Tree, parse_plain, read_text
 
 FILE = "rules/data/typical.yaml"
-_FORMAT = 2
+_FORMAT = 3
 _KEYS = ("value", "kind", "note")
+_RANGE = "range"
 EVIDENCE = ("published", "common practice", "from memory")
 """How good a typical value is, best first."""
 
@@ -37,17 +38,29 @@ WHATS: Mapping[str, Callable[[str], float]] = {
     "temperature_error": temperature_difference,
 }
 """What a typical value may be of, and how it is read: lengths mm, angles rad, differences of temperature K."""
+SHOWN: Mapping[str, str] = {
+    **dict.fromkeys(("runout", "face_runout", "axis", "reading", "touch", "position"), "um"),
+    **dict.fromkeys(("once_per_turn", "once_per_crank", "setting"), "arcsec"),
+    "tilt": "arcmin",
+    "temperature_error": "K",
+}
+"""The unit each is shown in."""
 
 
 @record
 class Typical:
-    """One typical value [mm, rad or K by what it is of] and how good it is."""
+    """One typical value [mm, rad or K by what it is of], how good it is, and what is usual: `best` to `worst`.
+
+    Only `value` stands in sums; the range says what a measurement may find.
+    """
 
     device: str
     what: str
     value: float
     kind: str
     note: str
+    best: float
+    worst: float
 
     @property
     def name(self) -> str:
@@ -62,7 +75,7 @@ def table() -> Mapping[tuple[str, str], Typical]:
 
 
 def read_table(text: str, file: str) -> dict[tuple[str, str], Typical]:
-    """Typical values of a YAML text: what -> device -> value, kind, note.
+    """Typical values of a YAML text: what -> device -> value, range, kind, note.
 
     Raises: JobError for broken YAML, SetupcheckError for an entry that is wrong or missing, with its line.
     """
@@ -84,16 +97,37 @@ def read_table(text: str, file: str) -> dict[tuple[str, str], Typical]:
 
 def _row(tree: Tree, device: str, what: str, row: Data) -> Typical:
     at = ("values", what, device)
-    if not isinstance(row, dict) or any(not isinstance(row.get(key), str) for key in _KEYS) or set(row) - set(_KEYS):
-        raise _wrong(tree, at, f"needs {', '.join(_KEYS)}, each a text, and nothing else")
+    texts = isinstance(row, dict) and all(isinstance(row.get(key), str) for key in _KEYS)
+    if not isinstance(row, dict) or not texts or set(row) - {*_KEYS, _RANGE}:
+        raise _wrong(tree, at, f"needs {', '.join(_KEYS)}, each a text, and {_RANGE}, and nothing else")
     value, kind, note = (str(row[key]) for key in _KEYS)
     if kind not in EVIDENCE:
         raise _wrong(tree, (*at, "kind"), f"is none of {', '.join(EVIDENCE)}")
+    read = _value(tree, (*at, "value"), what, value)
+    best, worst = _ends(tree, (*at, _RANGE), what, row.get(_RANGE))
+    if not best <= read <= worst:
+        raise _wrong(
+            tree, (*at, _RANGE), f"does not hold the value {value}. Write what is usual, best and worst, round it"
+        )
+    return Typical(device, what, read, kind, note, best, worst)
+
+
+def _value(tree: Tree, at: tuple[str | int, ...], what: str, text: str) -> float:
+    """One figure in the unit of what it is of."""
     try:
-        read = WHATS[what](value)
+        return WHATS[what](text)
     except NotationError as why:
-        raise _wrong(tree, (*at, "value"), f"is no value: {why}") from None
-    return Typical(device, what, read, kind, note)
+        raise _wrong(tree, at, f"is no value: {why}") from None
+
+
+def _ends(tree: Tree, at: tuple[str | int, ...], what: str, given: Data) -> tuple[float, float]:
+    """Best and worst of what is usual, both above zero, the better one first."""
+    if not isinstance(given, list) or len(given) != 2 or not all(isinstance(one, str) for one in given):
+        raise _wrong(tree, at, "is no pair. Write the best and the worst that is usual, as in [5 um, 25 um]")
+    best, worst = (_value(tree, at, what, str(one)) for one in given)
+    if not 0.0 < best < worst:
+        raise _wrong(tree, at, "has to run from a best above zero to a worst. Write the smaller one first")
+    return best, worst
 
 
 def _wrong(tree: Tree, path: tuple[str | int, ...], problem: str) -> SetupcheckError:
@@ -122,9 +156,26 @@ def own_name(series: str, entries: int) -> str:
     return f"{series} ({OWN}, {entries} entries)"
 
 
+_OF_HOUSE = " (house value of "
+
+
+def house_name(row: str, house: str) -> str:
+    """As findings name a value of a house file in place of a typical one.
+
+    >>> house_name("four-jaw runout", "Toolroom")
+    'four-jaw runout (house value of Toolroom, shop record)'
+    """
+    return f"{row}{_OF_HOUSE}{house}, {OWN})"
+
+
+def is_of_house(name: str) -> bool:
+    """Whether a name of what a value rests on is that of a house file's value."""
+    return _OF_HOUSE in name
+
+
 def is_own(name: str) -> bool:
-    """Whether a name of what a value rests on is that of the shop's own record; no typical value has such a name."""
-    return f" ({OWN}, " in name
+    """Whether a name of what a value rests on is the shop's own, by record or house file; no typical value's is such."""
+    return f" ({OWN}, " in name or is_of_house(name)
 
 
 def typical_length(device: str) -> Typical | None:

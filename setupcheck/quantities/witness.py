@@ -13,10 +13,10 @@ from setupcheck.jobfile.setups import Setup
 from setupcheck.quantities.devices import DEVICES
 from setupcheck.quantities.finished import finished
 from setupcheck.quantities.holdable import Standing, faces, rounds, standing_before
-from setupcheck.quantities.orders import bare, cut_in, part_of
 from setupcheck.quantities.proposals import Editor, Proposal, offered
 from setupcheck.quantities.rehold import Move, centre_move, holds_on_the_chain, in_file, square_move
 from setupcheck.quantities.route import machine_of
+from setupcheck.quantities.sharing import bare, cut_in, part_of
 from setupcheck.quantities.trials import Bench
 from setupcheck.record import record
 

@@ -103,6 +103,20 @@ FORMULAS: dict[str, tuple[str, str]] = {
         "2 w / face width, w = root of (film / (A cos(pressure angle) cos(lead angle))), A crowning",
         MARKS,
     ),
+    "symmetry": (
+        "2 x farthest distance of a gap's middle plane from the axis, at either end = 2 (distance of the axes + how far the "
+        "cutter stands beside + half the length x run-off sideways); dividing turns a gap about the axis and leaves it on it",
+        HOLES,
+    ),
+    "flank-run-off": (
+        "length of the teeth x (lean of their ring + how far the work lies beside the cutter's travel / length of the reading)",
+        HOLES,
+    ),
+    "depth-run-off": (
+        "length of the teeth x (lean of their ring + how far the work comes nearer to the cutter / length of the reading); on a "
+        "bevel instead of the latter how far the head is off the root cone",
+        HOLES,
+    ),
     "torque": (
         "lowest friction x pressure x seat x half the diameter over 1.2, at the temperature that takes most of the grip; "
         "pressure straight in the interference less what the peaks lose",

@@ -19,6 +19,10 @@ if TYPE_CHECKING:
 NOT_CRITICAL = 10.0
 """A reading may be so many times its plan: no number is worth printing. Source: our screening choice."""
 
+GOOD_ENOUGH = 4.0
+"""A reading that is trued with care may be so many times its plan: the care is better spent elsewhere. Source: our screening
+choice, twice what `setupcheck remedy` asks for, as its lines stand in every review."""
+
 _READINGS = {
     "square": "face run-out on {}",
     "and_centre": "run-out in the second plane on {}",
@@ -79,14 +83,17 @@ def _dials(found: Review, gates: Sequence[Gate], everything: bool) -> Iterator[s
         title = titles.get(gate.by, gate.by)
         if gate.reading is not None and gate.reading <= 0.0:
             lost.setdefault(title, []).append(dial_in_words(gate))
-        elif not is_idle(gate):
+        elif not is_idle(gate) and not is_enough(gate):
             text = _gate(gate, title, inches=inches) + near_in_words(bands_of(found, gate), gate, inches=inches)
             if everything:
                 text += _others(gate.limits, gate.by, titles, gate.indicator, inches=inches)
             yield from wrap(text, first="  ", rest="      ")
     for title, dials in lost.items():
         yield from wrap(f"no reading alone brings {title} inside: {'; '.join(dials)}", first="  ", rest="      ")
-    idle = [dial_in_words(gate) for gate in gates if is_idle(gate)]
+    enough = [_enough(gate, inches=inches) for gate in gates if is_enough(gate)]
+    if enough:
+        yield from wrap(f"good enough already, do not indicate finer: {'; '.join(enough)}", first="  ", rest="      ")
+    idle = [dial_in_words(gate) for gate in gates if is_idle(gate) and not is_enough(gate)]
     if idle:
         yield from wrap(f"not critical: {'; '.join(idle)}", first="  ", rest="      ")
 
@@ -94,6 +101,29 @@ def _dials(found: Review, gates: Sequence[Gate], everything: bool) -> Iterator[s
 def is_idle(gate: Gate) -> bool:
     """No requirement looks at this reading, or only from far away: a number would say nothing."""
     return gate.least <= 0.0 and (gate.reading is None or gate.reading > NOT_CRITICAL * gate.planned)
+
+
+def is_enough(gate: Gate) -> bool:
+    """It is trued with care, and an ordinary holding would do: the dial may show more than GOOD_ENOUGH times the plan."""
+    return gate.careful and gate.least <= 0.0 and gate.reading is not None and gate.reading > GOOD_ENOUGH * gate.planned
+
+
+def _enough(gate: Gate, *, inches: bool) -> str:
+    """`op 20, run-out on outside (10 um planned, 228 um would do: a three-jaw chuck as it comes)`."""
+    known = "measured" if gate.measured else "planned"
+    would = on_the_dial(gate.reading or 0.0, inches=inches, step=gate.indicator)
+    said = f"{as_stated(gate.planned, inches=inches)} {known}, {would} would do"
+    return f"{dial_in_words(gate)} ({said}{_ordinary(gate)})"
+
+
+def _ordinary(gate: Gate) -> str:
+    """The chuck that needs no truing, where its typical run-out is below what would do."""
+    from setupcheck.quantities.typical import typical
+
+    chuck = typical("three-jaw", "runout")
+    if gate.step == "square" or chuck is None or chuck.value > (gate.reading or 0.0):
+        return ""
+    return ": a three-jaw chuck as it comes"
 
 
 def dial_in_words(gate: Gate) -> str:
@@ -254,6 +284,7 @@ def gates_as_data(found: Review) -> list[dict[str, object]]:
             "also": list(g.also),
             "least": _um(g.least) if g.least else None,
             "high_at": clean(g.high_at) or None,
+            "good_enough": is_enough(g),
         }
         for g in found.gates
     ]

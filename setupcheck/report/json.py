@@ -17,7 +17,7 @@ from setupcheck.report.heating_plan import heating_plans_as_data
 from setupcheck.report.insert import inserts_as_data
 from setupcheck.report.joint import joints_as_data
 from setupcheck.report.remedies import remedy_in_words
-from setupcheck.report.rests import record_as_data
+from setupcheck.report.rests import first_as_data, record_as_data
 from setupcheck.report.then_now import then_of
 from setupcheck.report.uncomputed import uncomputed
 from setupcheck.report.wording import clean
@@ -48,7 +48,7 @@ def as_data(found: Review) -> dict[str, object]:
 
     from setupcheck import __version__
 
-    job, house = found.loaded.job, found.house
+    job = found.loaded.job
     lines = worked_out(found)  # these four before the quantities, which list what was looked at
     ground = inserts_as_data(found)
     joints, heating = joints_as_data(found), heating_plans_as_data(found)
@@ -57,7 +57,7 @@ def as_data(found: Review) -> dict[str, object]:
         "format": FORMAT,
         "setupcheck": __version__,
         "rule_book": {"version": found.rulebook.version, "sha256": found.rulebook.sha256},
-        "house": {"sha256": house.sha256} if house is not None else None,
+        "house": _house(found),
         "record": record_as_data(found),
         "job": {"title": clean(job.title), "file": found.loaded.file, "sha256": found.loaded.sha256},
         "on": found.on,
@@ -65,6 +65,7 @@ def as_data(found: Review) -> dict[str, object]:
         "counts": {v: found.evaluation.counts[v] for v in ("pass", "warn", "fail", "open", "waived")},
         "quantities": _quantities(found),
         "stacks": [_stack(found, scope) for scope in found.book.instances("stack")],
+        "measure_first": first_as_data(found),
         "gates": gates_as_data(found),
         "lengths": lengths_as_data(found),
         "joints": joints,
@@ -95,6 +96,20 @@ def as_data(found: Review) -> dict[str, object]:
 def plain_number(value: float) -> float:
     """A finite number at 12 significant digits, never -0."""
     return float(f"{value:.{DIGITS}g}") + 0.0 if math.isfinite(value) else 0.0
+
+
+def house_head(found: Review) -> dict[str, object] | None:
+    """Which house file acts; None where none does."""
+    house = found.house
+    return {"name": clean(house.name), "file": clean(house.file), "sha256": house.sha256} if house is not None else None
+
+
+def _house(found: Review) -> dict[str, object] | None:
+    if found.house is None:
+        return None
+    from setupcheck.report.house import house_as_data  # few jobs have one
+
+    return house_as_data(found)
 
 
 def _settled(value: float) -> float:
@@ -215,5 +230,6 @@ def _finding(found: Review, f: Finding) -> dict[str, object]:
         "sources": [{"ref": s.ref, "place": s.place, "kind": s.kind} for s in f.sources],
         "evidence": f.evidence,
         "rests_on": list(f.rests_on),
+        "house": clean(f.house) if f.house else None,
         "waiver": clean(f.waiver) if f.waiver else None,
     }

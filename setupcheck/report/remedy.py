@@ -11,7 +11,7 @@ from setupcheck.quantities.good_enough import FOUND_AT, KNOWN_TO, PLENTY, Enough
 from setupcheck.quantities.mending import Mended
 from setupcheck.quantities.single_causes import Entry, Row, Table
 from setupcheck.quantities.typed_entry import shown
-from setupcheck.quantities.typical import is_own
+from setupcheck.quantities.typical import is_of_house, is_own
 from setupcheck.report.causes import cause_in_parts, cause_in_words
 from setupcheck.report.edits import as_typed
 from setupcheck.report.proposals import proposals_as_text
@@ -48,6 +48,10 @@ def as_text(found: Review, mended: Mended) -> str:
 def _head(found: Review, mended: Mended) -> Iterator[str]:
     job = found.loaded.job
     yield from wrap(f"{clean(job.job)}: {clean(job.title)}" if job.job else clean(job.title))
+    if found.house is not None:
+        from setupcheck.report.house import house_line  # few jobs have one
+
+        yield from house_line(found.house)
     asked = [r for r in found.results.values() if r.margin is not None]
     out = sum(r.margin is not None and r.margin < 0.0 for r in asked)
     many = "requirement" if len(asked) == 1 else "requirements"
@@ -115,6 +119,8 @@ def entry_in_words(entry: Entry) -> str:
         what = what.partition(" in cutting ")[0]
         where = f"op {ops}" if ops else where
     text = f"{where}, {what}" if where else what
+    if is_of_house(entry.typical):
+        return f"{text}, a house value"
     if is_own(entry.typical):
         return f"{text}, from the shop's record"
     return f"{text}, typical value" if entry.typical else text

@@ -13,7 +13,7 @@ from setupcheck.quantities.mending import Mended
 from setupcheck.quantities.proposals import Idea, Proposal
 from setupcheck.quantities.single_causes import Entry, Row, Table
 from setupcheck.report.edits import as_data as edits_as_data
-from setupcheck.report.json import FORMAT, METRIC, plain_number
+from setupcheck.report.json import FORMAT, METRIC, house_head, plain_number
 from setupcheck.report.proposals import idea_in_words
 from setupcheck.report.remedy import entry_in_words
 from setupcheck.report.stacks_in_words import Words
@@ -34,6 +34,7 @@ def as_data(found: Review, mended: Mended) -> dict[str, object]:
         "format": FORMAT,
         "setupcheck": __version__,
         "rule_book": {"version": found.rulebook.version, "sha256": found.rulebook.sha256},
+        "house": house_head(found),
         "job": {"title": clean(loaded.job.title), "file": loaded.file, "sha256": loaded.sha256},
         "verdict": found.verdict,
         "failing": mended.failing,

@@ -19,7 +19,7 @@ from setupcheck.report.joint import joints
 from setupcheck.report.progress import still_to_move
 from setupcheck.report.prove_out import prove_outs
 from setupcheck.report.remedies import remedy_in_words
-from setupcheck.report.rests import how_known, record_used, rests_in_words
+from setupcheck.report.rests import how_known, measure_first, record_used, rests_in_words
 from setupcheck.report.then_now import then_now
 from setupcheck.report.uncomputed import in_lines, uncomputed
 from setupcheck.report.wording import clean, finer, in_unit, title_of, unit_of, wrap
@@ -42,6 +42,7 @@ def as_text(found: Review, *, everything: bool = False) -> str:
         _stops(found),
         _findings(found, everything),
         _requirements(found, everything),
+        measure_first(found, everything),
         then_now(found, everything),
         still_to_move(found),
         prove_outs(found),
@@ -52,6 +53,7 @@ def as_text(found: Review, *, everything: bool = False) -> str:
         inserts(found),
         _worked_out(found),
         record_used(found),
+        _house(found),
         _uncomputed(found),
         dials_in_words(found, everything=everything),
         lengths_in_words(found, everything=everything),
@@ -81,6 +83,10 @@ def _head(found: Review) -> Iterator[str]:
     name = f"{clean(job.job)}: {clean(job.title)}" if job.job else clean(job.title)
     yield from wrap(name)
     yield from verdict_lines(found)
+    if found.house is not None:
+        from setupcheck.report.house import house_line  # few jobs have one
+
+        yield from house_line(found.house)
     unanswered = [c for c in found.evaluation.cautions if c.severity == "stop-and-check" and not c.answered]
     if unanswered and found.evaluation.counts["fail"] == 0:
         yield from wrap(
@@ -150,6 +156,7 @@ def _finding(found: Review, finding: Finding, rules: str) -> Iterator[str]:
     yield from wrap(clean(finding.message) + "." + _margin(finding), first="      ", rest="      ")
     if finding.verdict == "pass":
         yield from _rests_on(finding)
+        yield from _by_house(finding)
         return
     result = found.results.get(finding.key)
     biggest = _share(found, result, 3) if result is not None and finding.rule.startswith("STACK") else []
@@ -165,14 +172,18 @@ def _finding(found: Review, finding: Finding, rules: str) -> Iterator[str]:
             rest="          ",
         )
     yield from _rests_on(finding)
-    if finding.house:
-        yield from wrap(f"By {clean(finding.house)}", first="      ", rest="      ")
+    yield from _by_house(finding)
     if finding.waiver:
         yield from wrap(f"Waived: {clean(finding.waiver)}", first="      ", rest="      ")
     if finding.verdict == "open":
         return
     told = [f"{s.ref}, {s.place} ({s.kind})" if s.place else f"{s.ref} ({s.kind})" for s in finding.sources]
     yield from wrap("Source: " + "; ".join(told), first="      ", rest="          ")
+
+
+def _by_house(finding: Finding) -> Iterator[str]:
+    if finding.house:
+        yield from wrap(f"By {clean(finding.house)}", first="      ", rest="      ")
 
 
 def _rests_on(finding: Finding) -> Iterator[str]:
@@ -293,6 +304,13 @@ def _worked_out(found: Review) -> Iterator[str]:
         yield "WORKED OUT"
         for line in lines:
             yield from wrap(line, first="  ", rest="      ")
+
+
+def _house(found: Review) -> Iterator[str]:
+    if found.house is not None:
+        from setupcheck.report.house import house_used
+
+        yield from house_used(found)
 
 
 def _uncomputed(found: Review) -> Iterator[str]:

@@ -10,6 +10,7 @@ from pydantic import BaseModel
 from setupcheck.jobfile.models import Flat, Part, Pattern, Round, Throat
 from setupcheck.jobfile.reading import LoadedJob
 from setupcheck.jobfile.setups import Setup
+from setupcheck.quantities.cones import bevel_of
 from setupcheck.quantities.pairing import FITTED
 from setupcheck.quantities.tilting import cuts_the_wheel
 from setupcheck.record import record
@@ -55,7 +56,7 @@ NOT_LOOKED_AT: Mapping[str, Mapping[str, str]] = {
         "rating": "rating {said}",
     },
     "Head": {
-        "tilt": "tilt {said} (compared with the worm only where its wheel is cut gap by gap)",
+        "tilt": "tilt {said} (compared with a worm whose wheel is cut gap by gap, or with the root cone of bevel teeth)",
         "uncertainty": "uncertainty of the tilt {said}",
         "leans": "leans {said}",
         "by": "tilt set by {said}",
@@ -66,7 +67,9 @@ NOT_LOOKED_AT: Mapping[str, Mapping[str, str]] = {
         "depth": "depth {said} of {of} (held against the passes only)",
         "depth_from": "depth of {of} counted from {said}",
         "depth_error": "error of the depth of {of} {said}",
+        "off_centre": "cutter off the centre of {of} {said}",
     },
+    "Setup": {"travel": "travel of the cutter ({said})"},
     "Join": {
         "heat": "heat ({said})",
         "grips_first": "grips first at the {said}",
@@ -129,7 +132,8 @@ class _Looked:
 
 def _looked(loaded: LoadedJob) -> _Looked:
     """Entries that count in this job, though not in every job."""
-    return _Looked(frozenset((*_of_joints(loaded), *_of_the_wheel(loaded), *_of_heads(loaded), *_of_limits(loaded))))
+    found = (_of_joints, _of_the_wheel, _of_heads, _of_gaps, _of_limits)
+    return _Looked(frozenset(one for of in found for one in of(loaded)))
 
 
 _OF_A_FIT = ("joint", "friction", "smoothing", "must_carry", "serves_at", "growth_at", "pairs")
@@ -197,8 +201,22 @@ def _of_heads(loaded: LoadedJob) -> Iterator[str]:
         if cuts_the_wheel(loaded, setup):
             yield from (f"setups.{setup.op}.head", "mesh.shaft_angle_error")
             yield from (f"machines.{setup.machine}.{key}" for key in ("nose_points", "cutter_stands"))
+        elif bevel_of(loaded, setup) is not None:
+            yield from (f"setups.{setup.op}.head.{key}" for key in ("tilt", "uncertainty", "by", "sine_bar", "blocks"))
         elif setup.head is not None and setup.head.tilt == 0.0:
             yield f"setups.{setup.op}.head.tilt"
+
+
+def _of_gaps(loaded: LoadedJob) -> Iterator[str]:
+    """What the cutter stands beside gaps, and how the work lies to its travel: gaps alone hear of it, a slot has no length."""
+    for setup in loaded.job.setups:
+        for name in setup.cut:
+            ref = loaded.ref(name, setup.part)
+            kind = loaded.job.parts[ref.part].surfaces[ref.surface].kind
+            if kind in ("teeth", "slot"):
+                yield f"setups.{setup.op}.cut.{name}.off_centre"
+            if kind == "teeth":
+                yield f"setups.{setup.op}.travel"
 
 
 def _of_limits(loaded: LoadedJob) -> Iterator[str]:
@@ -263,6 +281,7 @@ def _part(loaded: LoadedJob, looked: _Looked, name: str, part: Part) -> Iterator
 
 def _setup(loaded: LoadedJob, looked: _Looked, setup: Setup) -> Iterator[Uncomputed]:
     owner, path = f"op {setup.op}", f"setups.{setup.op}"
+    yield from _entries(loaded, looked, setup, path, owner)
     if setup.head is not None:
         yield from _entries(loaded, looked, setup.head, f"{path}.head", owner)
     for surface, cut in setup.cut.items():

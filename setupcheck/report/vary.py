@@ -14,7 +14,7 @@ from setupcheck.quantities.book import Book, Known, Scope
 from setupcheck.quantities.judged import Result
 from setupcheck.quantities.scopes import stack_of
 from setupcheck.record import record
-from setupcheck.report.json import DRAWN_DIGITS, FORMAT, METRIC, plain_number
+from setupcheck.report.json import DRAWN_DIGITS, FORMAT, METRIC, house_head, plain_number
 from setupcheck.report.text import limits_in_words
 from setupcheck.report.wording import clean, title_of, unit_of, wrap
 from setupcheck.rulebook import VERDICTS, Finding
@@ -183,6 +183,10 @@ def as_text(found: Varied, *, everything: bool = False) -> str:
 def _head(found: Varied) -> Iterator[str]:
     job = found.before.loaded.job
     yield from wrap(f"{clean(job.job)}: {clean(job.title)}" if job.job else clean(job.title))
+    if found.before.house is not None:
+        from setupcheck.report.house import house_line  # few jobs have one
+
+        yield from house_line(found.before.house)
     yield from with_what(found)
     yield ""
     yield f"{'':12}{'before':>8}{'after':>8}"
@@ -277,6 +281,7 @@ def as_data(found: Varied) -> dict[str, object]:
         "format": FORMAT,
         "setupcheck": __version__,
         "rule_book": {"version": found.after.rulebook.version, "sha256": found.after.rulebook.sha256},
+        "house": house_head(found.after),
         "job": {"title": clean(loaded.job.title), "file": loaded.file, "sha256": loaded.sha256},
         "set": [{"key": clean(one.key), "value": clean(one.value)} for one in found.changes],
         "before": _verdict(found.before),

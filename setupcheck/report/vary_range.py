@@ -122,6 +122,10 @@ def as_text(swept: Swept) -> str:
 def _head(swept: Swept) -> Iterator[str]:
     job, span = swept.before.loaded.job, swept.range
     yield from wrap(f"{clean(job.job)}: {clean(job.title)}" if job.job else clean(job.title))
+    if swept.before.house is not None:
+        from setupcheck.report.house import house_line  # few jobs have one
+
+        yield from house_line(swept.before.house)
     first, last = (span.written(n) for n in (span.numbers[0], span.numbers[-1]))
     yield from wrap(f"what if {span.key} = {first} to {last}", rest="    ")
     for change in swept.others:
@@ -180,7 +184,7 @@ def as_data(swept: Swept) -> dict[str, object]:
     """The table as plain data: each value with its comparison but for the numbers, and every turn."""
     span = swept.range
     pairs = [pair_as_data(one) for one in swept.found]
-    head = ("format", "setupcheck", "rule_book", "job")
+    head = ("format", "setupcheck", "rule_book", "house", "job")
     return {
         **{key: pairs[0][key] for key in head},
         "range": {"key": clean(span.key), "step": plain_number(float(span.step)), "unit": clean(span.unit)},

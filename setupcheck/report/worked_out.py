@@ -14,6 +14,7 @@ _PIECE = re.compile(r"\{([a-z0-9_.]+)\}")
 
 SENTENCES: Sequence[tuple[str, str, str]] = (
     ("setup", "head", "lead angle {tilt.needed}, worst error of the tilt {tilt.worst_error}"),
+    ("setup", "head", "root cone {tilt.cone}"),
     ("setup", "head", "gauge blocks {tilt.blocks}"),
     ("setup", "head", "tilting carries the wheel's middle {tilt.shift_height} up or down and {tilt.shift_length} back"),
     ("setup", "head", "{tilt.picture}"),

@@ -42,7 +42,10 @@ def describe(rulebook: RuleBook, id: str | None = None) -> str:
         return "\n".join([head, *_field("gives", engine.gives), *_field("why", engine.why)]) + "\n"
     known = [r.id for r in rulebook.rules] + [c.id for c in rulebook.cautions] + [own.id for own in ENGINE_RULES]
     near = nearest(id, known)
-    raise RuleBookError("rules", 0, f"there is no rule {id}", f"Did you mean {near}?" if near else "Ask without an id.")
+    hint = f"Did you mean {near}?" if near else "Ask without an id."
+    if id.startswith("SHOP-"):
+        hint = "A shop's own rule stands in its house file: name it with --house FILE."
+    raise RuleBookError("rules", 0, f"there is no rule {id}", hint)
 
 
 def requirement_text(require: Requirement) -> str:

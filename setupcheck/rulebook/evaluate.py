@@ -43,7 +43,8 @@ def evaluate(
     """Judge one job.
 
     book, facts  the numbers and facts of the job (see needs.py)
-    house        a shop's own limits;  waivers, answers  the job's `waive` and `checked` lists
+    house        what a shop's house file puts in force; its rule book has to be the one given
+    waivers, answers  the job's `waive` and `checked` lists
     on           the day the job is judged (ISO date text); without it no waiver with an end is in force
     """
     findings: list[Finding] = []
@@ -53,15 +54,17 @@ def evaluate(
         instances = book.instances(book.quantities[rule.quantity].per)
         if not instances:
             idle.append(rule.id)
-        own = house.limit_for(rule.id) if house is not None else None
+        own, said = (house.limit_for(rule.id), house.said_of(rule)) if house is not None else (None, "")
         for at in instances:
-            finding = _at_instance(rule, book, facts, at, house=own, house_name=house.name if house else "")
+            finding = _at_instance(rule, book, facts, at, house=own, said=said)
             if finding is None:
                 passed_over[rule.id] = passed_over.get(rule.id, 0) + 1
             else:
                 findings.append(finding)
     lines = safety.triggered(rulebook, book, facts, answers=answers)
     findings = waived(findings, waivers, rulebook=rulebook, on=on)
+    if house is not None:
+        findings = house.waive(findings, on=on)
     findings += unanswered_entries(answers, lines=lines, rulebook=rulebook)
     return Evaluation(ordered(findings), passed_over, tuple(idle), lines)
 
@@ -87,7 +90,7 @@ def verdict(findings: Iterable[Finding], cautions: Iterable[CautionLine] = ()) -
 
 
 def _at_instance(
-    rule: Rule, book: Book[S], facts: Facts[S], at: S, *, house: HouseLimit | None, house_name: str
+    rule: Rule, book: Book[S], facts: Facts[S], at: S, *, house: HouseLimit | None, said: str
 ) -> Finding | None:
     """The finding of one rule at one instance; None when it does not apply there."""
     fits = applies(rule.applies_when, facts, at)
@@ -112,7 +115,7 @@ def _at_instance(
         told = _open(limits, value)
     else:
         told = _judged(rule, book, facts, at, value=value, limits=limits)
-    return _finding(rule, book, at, told, house=house.said(house_name) if house is not None else "")
+    return _finding(rule, book, at, told, house=said)
 
 
 @record

@@ -24,6 +24,7 @@ FACTS: Mapping[str, str] = {
     "hold.by": "device of a hold entry: three-jaw, spigot, ...",
     "hold.datum_kind": "kind of surface the entry is set on",
     "setup.follows_heat": "true when the setup just before joined this part hot, 58 degC or more",
+    "hold.jaws_stand_out": "true when the jaws reach beyond the body of their chuck",
     "head.tilted": "true when a head is set to an angle for the cut",
     "divide.by": "hole-circle, direct, vernier, readout, ...",
     "cut.kind": "kind of surface that is cut",

@@ -7,11 +7,13 @@ from __future__ import annotations
 
 import hashlib
 import re
-from collections.abc import Collection, Mapping
+from collections.abc import Callable, Collection, Iterator, Mapping
+from functools import partial
 from pathlib import Path
 from types import MappingProxyType
 from typing import TypeVar
 
+from setupcheck.errors import RuleBookError
 from setupcheck.record import record
 from setupcheck.rulebook.entries import Entry, list_of, open_file
 from setupcheck.rulebook.facts import FACTS
@@ -54,7 +56,7 @@ _CAUTION_ID = re.compile(r"[a-z]+(-[a-z]+)*")
 
 
 @record
-class _Names:
+class Names:
     """Every name that a rule may use."""
 
     quantities: Mapping[str, Quantity]
@@ -84,20 +86,20 @@ def load_rulebook(
     head.only("version")
     version = head.text("version")
     references = _references(opened("sources.yaml"))
-    names = _Names(quantities, known_facts, references)
+    names = Names(quantities, known_facts, references)
     safety = opened("cautions.yaml")
     safety.only("closing_line", "cautions")
     cautions = tuple(_caution(entry, names) for entry in list_of(safety.need("cautions")))
     _no_twins(list_of(safety.need("cautions")), [caution.id for caution in cautions])
 
-    names = _Names(quantities, known_facts, references, [caution.id for caution in cautions])
+    names = Names(quantities, known_facts, references, [caution.id for caution in cautions])
     rules: list[Rule] = []
     for family in FAMILIES:
         name = f"{family.lower()}.yaml"
         if not (folder / name).is_file():
             continue
         entries = list_of(opened(name))
-        found = [_rule(entry, family, names) for entry in entries]
+        found = [read_rule(entry, family, names) for entry in entries]
         _no_twins(entries, [rule.id for rule in found])
         rules += sorted(found, key=lambda rule: rule.id)
     return RuleBook(
@@ -118,11 +120,12 @@ def _references(root: Entry) -> dict[str, Reference]:
     return found
 
 
-def _rule(entry: Entry, family: str, names: _Names) -> Rule:
+def read_rule(entry: Entry, family: str, names: Names) -> Rule:
+    """One rule of a family; without one any id will do. Raises: RuleBookError for the first thing that is wrong with it."""
     entry.only(*_RULE_KEYS)
     rule_id = entry.text("id")
     matched = _RULE_ID.fullmatch(rule_id)
-    if matched is None or matched[1] != family:
+    if family and (matched is None or matched[1] != family):
         raise entry.need("id").wrong(f"'{rule_id}' is no id of this file", f"Write {family}-NNN with three digits")
     quantity = _quantity(entry.need("quantity"), names)
     require = _requirement(entry.need("require"), quantity, names)
@@ -166,7 +169,38 @@ def _rule(entry: Entry, family: str, names: _Names) -> Rule:
     )
 
 
-def _requirement(entry: Entry, quantity: Quantity, names: _Names) -> Requirement:
+def mistakes_of_rule(entry: Entry, names: Names) -> Iterator[RuleBookError]:
+    """Everything that is wrong with the entries of a rule, each looked at for itself; its id is left to others.
+
+    Nothing is told as missing beside a key that nobody knows: it may be that one, misspelt.
+    """
+    unknown = False
+    try:
+        entry.only(*_RULE_KEYS)
+    except RuleBookError as why:
+        unknown = True
+        yield why
+    if not entry.is_map:
+        return
+    readers: tuple[Callable[[], object], ...] = (
+        *(partial(entry.text, key) for key in ("title", "remedy", "why")),
+        lambda: _quantity(entry.need("quantity"), names),
+        lambda: _one_of(entry.need("level"), LEVELS, "level"),
+        lambda: _message(entry.need("message")),
+        lambda: _sources(entry.need("sources"), names),
+        lambda: _conditions(entry.get("applies_when"), names),
+        lambda: _caution_ids(entry.get("cautions"), names),
+        lambda: read_rule(entry, "", names),
+    )
+    for read in readers:
+        try:
+            read()
+        except RuleBookError as why:
+            if not (unknown and why.problem.endswith("is missing")):
+                yield why
+
+
+def _requirement(entry: Entry, quantity: Quantity, names: Names) -> Requirement:
     entry.only(*SHAPES)
     shapes = [shape for shape in SHAPES if entry.get(shape) is not None]
     if len(shapes) != 1:
@@ -192,7 +226,7 @@ def _requirement(entry: Entry, quantity: Quantity, names: _Names) -> Requirement
             return Requirement("one_of", allowed=words)
 
 
-def _limit(entry: Entry, quantity: Quantity, names: _Names) -> Limit:
+def _limit(entry: Entry, quantity: Quantity, names: Names) -> Limit:
     """A number with its unit, or `{quantity: name, times: factor}`; its unit fits the quantity it limits."""
     if not entry.is_map:
         return read_number(entry, quantity.unit)
@@ -209,7 +243,7 @@ def _limit(entry: Entry, quantity: Quantity, names: _Names) -> Limit:
     return OfQuantity(other.name, factor)
 
 
-def _words(entry: Entry | None, names: _Names) -> str:
+def _words(entry: Entry | None, names: Names) -> str:
     """A quantity whose value is words."""
     if entry is None:
         return ""
@@ -219,13 +253,13 @@ def _words(entry: Entry | None, names: _Names) -> str:
     return quantity.name
 
 
-def _softening(entry: Entry, names: _Names) -> Softening:
+def _softening(entry: Entry, names: Names) -> Softening:
     entry.only("quantity", "at_least")
     quantity = _quantity(entry.need("quantity"), names)
     return Softening(quantity.name, _limit(entry.need("at_least"), quantity, names))
 
 
-def _uncertainty(entry: Entry, quantity: Quantity, names: _Names) -> str:
+def _uncertainty(entry: Entry, quantity: Quantity, names: Names) -> str:
     other = _quantity(entry, names)
     if dimension_of(other.unit) != dimension_of(quantity.unit):
         raise entry.wrong(f"{other.name} is no uncertainty of {quantity.name}: other unit", "Name one in its unit")
@@ -246,7 +280,7 @@ def _house_span(entry: Entry | None, require: Requirement, quantity: Quantity) -
     return HouseSpan(low, high)
 
 
-def _conditions(entry: Entry | None, names: _Names) -> tuple[Condition, ...]:
+def _conditions(entry: Entry | None, names: Names) -> tuple[Condition, ...]:
     if entry is None:
         return ()
     found: list[Condition] = []
@@ -260,7 +294,7 @@ def _conditions(entry: Entry | None, names: _Names) -> tuple[Condition, ...]:
     return tuple(found)
 
 
-def _caution(entry: Entry, names: _Names) -> Caution:
+def _caution(entry: Entry, names: Names) -> Caution:
     entry.only("id", "severity", "per", "when", "quantity", "at_least", "text", "sources")
     caution_id = entry.text("id")
     if not _CAUTION_ID.fullmatch(caution_id):
@@ -285,7 +319,7 @@ def _caution(entry: Entry, names: _Names) -> Caution:
     )
 
 
-def _sources(entry: Entry, names: _Names) -> tuple[Source, ...]:
+def _sources(entry: Entry, names: Names) -> tuple[Source, ...]:
     found: list[Source] = []
     for one in list_of(entry):
         one.only("ref", "place", "kind")
@@ -307,7 +341,7 @@ def _kind(entry: Entry) -> str:
     return kind
 
 
-def _caution_ids(entry: Entry | None, names: _Names) -> tuple[str, ...]:
+def _caution_ids(entry: Entry | None, names: Names) -> tuple[str, ...]:
     if entry is None:
         return ()
     for one in list_of(entry):
@@ -316,7 +350,7 @@ def _caution_ids(entry: Entry | None, names: _Names) -> tuple[str, ...]:
     return tuple(one.scalar_text() for one in list_of(entry))
 
 
-def _quantity(entry: Entry, names: _Names) -> Quantity:
+def _quantity(entry: Entry, names: Names) -> Quantity:
     name = entry.scalar_text()
     if name not in names.quantities:
         raise entry.unknown("quantity", names.quantities)

@@ -126,13 +126,9 @@ grip: {{from: {u.size(length + u.up(4.0))}, to: {u.size(length + u.up(4.0) + stu
       rim:      {{leave_on_diameter: {u.size(u.up(1.0))}}}
       front:    {{leave: {u.size(u.up(0.5))}, error: {u.error(0.10)}, removes: [bar]}}
       bore:     {{leave_on_diameter: {u.size(u.up(1.0))}, state: rough}}
-  - op: 30          # everything that has to run true, in one holding: the chuck's own error reaches none of it
+  - op: 30          # all that has to run true, finished before the jaws are opened: their error reaches none of it
     machine: lathe-G
-    looks_at_tool: +z
-    hold:
-      centre: {{on: nose, by: soft-jaws, at: {u.size(step / 2.0)}, runout: {{device: soft-jaws}}}}
-      square: {{on: back, by: jaws, face_runout: {{device: jaws}}, across: {u.size(u.down(0.9 * nose))}}}
-      stop:   {{on: back, error: {u.error(0.030)}}}    # GUESS
+    keeps: 20
     cut:
       bore:     {{}}
       rim:      {{}}

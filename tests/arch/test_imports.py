@@ -147,6 +147,12 @@ def test_a_review_to_a_pipe_loads_nothing_it_does_not_need() -> None:
         "setupcheck.jobfile.spelling",
         "setupcheck.quantities.device_record",
         "setupcheck.quantities.own_values",
+        "setupcheck.quantities.judgeable",
+        "setupcheck.rulebook.house",
+        "setupcheck.rulebook.house_file",
+        "setupcheck.rulebook.house_rules",
+        "setupcheck.report.house",
+        "setupcheck.report.house_check",
         "setupcheck.physics.student_t",
     }
 

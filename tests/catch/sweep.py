@@ -87,7 +87,8 @@ def removed_in_silence(found: Sequence[Spoilt]) -> list[Spoilt]:
 
 def told(found: Sequence[Spoilt]) -> list[str]:
     """The shares, way by way."""
-    lines = [f"{len({one.number for one in found})} numbers spoilt in turn", f"  {'':<10}{'tries':>6}{'noticed':>9}{'moves':>7}{'silent':>8}"]
+    head = f"  {'':<10}{'tries':>6}{'noticed':>9}{'moves':>7}{'silent':>8}"
+    lines = [f"{len({one.number for one in found})} numbers spoilt in turn", head]
     for way in WAYS:
         counts = Counter(one.how for one in found if one.way == way)
         tries = sum(counts.values())

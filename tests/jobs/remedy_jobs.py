@@ -7,6 +7,23 @@ import shlex
 
 from setupcheck.jobfile.changing import read_change
 from setupcheck.jobfile.editing import Drop, Edit, Exchange
+from setupcheck.shipped import shipped
+
+_KEPT = "    keeps: 20 "
+_HELD_AGAIN = """    looks_at_tool: +z
+    hold:
+      centre: {on: nose, by: soft-jaws, at: 20, runout: 25 um}
+      square: {on: back, by: jaws, face_runout: 20 um, across: 120}
+      stop:   {on: back, error: 30 um}
+    #"""
+
+
+def held_twice() -> str:
+    """The coupling hub, taken out between roughing and finishing and held again as it was."""
+    text = shipped("jobs/coupling-hub.yaml").read_text(encoding="utf-8")
+    assert text.count(_KEPT) == 1
+    return text.replace(_KEPT, _HELD_AGAIN)
+
 
 COVERED_BORE = """
 setupcheck: 1

@@ -94,6 +94,13 @@ def gripped(at: str) -> tuple[str, str]:
     return "{on: bar, by: three-jaw, at: -20,", f"{{on: bar, by: three-jaw{at},"
 
 
+def turning(said: str) -> tuple[str, str]:
+    return "    cut: {front", f"    turning: {{{said}}}\n    cut: {{front"
+
+
+GRIPPED = ("at: -20, runout", "at: -20, grip_force: 2 kN, runout")
+
+
 SET_OFF: Mapping[str, tuple[int, Changes, Changes]] = {
     "leaded-alloy-dust": (10, (LEADED,), (BRONZE,)),
     "beryllium-copper": (10, (BERYLLIUM, GRINDER), (BERYLLIUM,)),
@@ -112,6 +119,12 @@ SET_OFF: Mapping[str, tuple[int, Changes, Changes]] = {
     "broach-force": (10, (BROACH,), (WHEEL_TOOL,)),
     "head-lifting": (10, (HEAD,), ()),
     "boring-bar-overhang": (10, (bar("40"),), (bar("39"),)),
+    "jaws-protrude": (10, (("at: -20,", "at: -20, jaws_stand_out: 8 mm,"),), (("at: -20,", "at: -20, jaws_stand_out: 0,"),)),
+    "chuck-speed": (10, (turning("speed: 2500 rpm, chuck_speed: 2500 rpm"),), (turning("speed: 2499 rpm, chuck_speed: 2500 rpm"),)),
+    "off-centre-mass": (10, (GRIPPED, turning("speed: 1910 rpm, chuck_speed: 2500 rpm, off_centre: 0.5 kg, off_by: 10 mm")),
+                        (GRIPPED, turning("speed: 1909 rpm, chuck_speed: 2500 rpm, off_centre: 0.5 kg, off_by: 10 mm"))),
+    "spindle-rear-bar": (10, (turning("speed: 500 rpm, chuck_speed: 2500 rpm, bar_behind: 300 mm"),),
+                         (turning("speed: 499 rpm, chuck_speed: 2500 rpm, bar_behind: 900 mm"),)),
     "work-overhang": (10, (("from: -40, to: 40,", "from: -200, to: 40,"), gripped(", at: -140")), (gripped(", at: -30"),)),
     "open-flame-alloy": (20, (LEADED, FLAME), (BRONZE, FLAME)),
     "open-flame-fire": (20, (FLAME,), ()),
@@ -151,6 +164,10 @@ SILENT: Mapping[str, tuple[Changes, str]] = {
     "grinding-wheel-in-a-lathe": ((WHEEL_TOOL, ("    machine: shop\n", "")), "setups.10.machine"),
     "wheel-overspeed": ((("    machine: shop\n", ""),), "setups.10.machine"),
     "boring-bar-overhang": ((("{kind: single-point}", "{kind: boring-head, bar_diameter: 10}"),), "cutters.tool.overhang"),
+    "chuck-speed": ((turning("speed: 600 rpm"),), "setups.10.turning.chuck_speed"),
+    "off-centre-mass": ((turning("speed: 600 rpm, chuck_speed: 2500 rpm, off_centre: 0.5 kg, off_by: 10 mm"),),
+                        "setups.10.hold.centre.grip_force"),
+    "spindle-rear-bar": ((turning("bar_behind: 300 mm"),), "setups.10.turning.speed"),
     "open-flame-alloy": ((UNKNOWN, FLAME), "parts.hub.material"),
     "zinc-fume": ((UNKNOWN, FLAME), "parts.hub.material"),
     "heat-above-cap": ((FLAME,), "setups.20.join.heat.oven_error"),

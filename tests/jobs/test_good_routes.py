@@ -132,6 +132,9 @@ def test_the_fit_of_a_joint_in_mid_route_reaches_nothing_that_is_cut_after_it() 
 TRY_IT = {  # what the head of each job says to try, and the rules that speak then
     "coupling-hub": ("heat: {hub: 260 degC", "heat: {hub: 200 degC", {"HEAT-001"}),
     "bearing-ring-seat": (",\n         shaft: -40 degC, cold_by: freezer, cold_error: 2 K", "", {"HEAT-001"}),
+    "splined-shaft": ("beside: 10 um", "beside: 60 um", {"STACK-001"}),
+    "bevel-pinion-blank": ("blocks: 79.319", "blocks: 79.600", {"TILT-007"}),
+    "sprocket": ("front: {error: 40 um,", "front: {error: 0.1 mm,", {"STACK-001", "STACK-002"}),
     "rotator-worm-wheel": (
         "centre: {on: hub, by: spigot,",
         "centre: {on: rim, by: spigot,",

@@ -31,6 +31,7 @@ SECTIONS = ("parts", "worm", "mesh", "cutters", "machines", "setups", "place")
 DEFAULTS = {  # key, with * for a name or an operation -> what is taken where it is left out
     "parts.*.surfaces.*.hole": "a shaft that no hole is drawn in is solid",
     "parts.*.surfaces.*.diameter": "a face without a size ends where the other one, or the metal beside it, does",
+    "parts.*.surfaces.*.cone": "teeth that no cone is stated of stand round a cylinder; a tilt of the head is then told",
     "setups.*.hold.*.at": "a plane without a height lies in the middle of its surface",
     "setups.*.hold.*.runout.measured": "what is not measured yet counts as planned",
     "setups.*.hold.*.runout.device": "an error without a name is another cause in every setup",

@@ -37,7 +37,7 @@ SLIPS = [
     (DISC, "setups.40.join.trued.runout.uncertainty", "5 um", "MEASURE-002"),
     (DISC, "setups.40.join.trued.on", "disc.edge", "STACK-001"),
     (DISC, "setups.40.join.trued.about", "mount.register", "STACK-001"),
-    (DISC, "setups.40.join.clearance", "[20 um, 60 um]", "HOLD-025"),
+    (DISC, "setups.40.join.clearance", "[20 um, 60 um]", "HOLD-013"),
     (DISC, "setups.40.join.fit_error", "4 um", "STACK-001"),
     (DISC, "require[2].heads_off", "15 deg", "STACK-001"),
     (RING, "require[1].of", "ring.register@20", "STACK-001"),
@@ -58,7 +58,7 @@ def test_a_slip_of_one_entry_is_told_by_its_rule(name: str, key: str, value: str
 
 
 LEFT_OUT = [
-    (DISC, "clearance: [90 um, 130 um]\n      ", "HOLD-025", "setups.40.join.clearance"),
+    (DISC, "clearance: [90 um, 130 um]\n      ", "HOLD-013", "setups.40.join.clearance"),
     (DISC, "fit_error: 1 um ", "STACK-001", "setups.40.join.fit_error"),
     (DISC, "heads_off: 30', ", "STACK-001", "require[2].heads_off"),
     (RING, ", away: 18", "HEAT-020", "setups.30.join.heat.near.away"),

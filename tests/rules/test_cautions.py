@@ -243,6 +243,32 @@ def test_an_operation_prints_the_cautions_that_belong_to_it(facts: dict[str, Any
     assert expected == ids(evaluate(shipped(), fake, facts_from(facts)))
 
 
+TURNED: dict[str, tuple[dict[str, float], str]] = {
+    "at its marked speed": ({"turn.speed": 2500.0, "turn.chuck_speed": 2500.0}, "chuck-speed"),
+    "with what stands off the axis": ({"turn.throw": 200.0, "turn.throw_allowed": 200.0}, "off-centre-mass"),
+    "with a bar behind": ({"turn.bar_behind": 300.0}, "spindle-rear-bar"),
+}
+
+
+@pytest.mark.parametrize(("numbers", "name"), TURNED.values(), ids=TURNED.keys())
+def test_what_turns_prints_its_caution_at_its_limit(numbers: dict[str, float], name: str) -> None:
+    first = next(iter(numbers))
+
+    def printed(value: Has | Lacks | None) -> bool:
+        rest = {key: Has(number) for key, number in numbers.items() if key != first}
+        fake = FakeBook(SHIPPED_QUANTITIES, list(SCOPES.values()), {**rest, **({first: value} if value else {})})
+        return name in ids(evaluate(shipped(), fake, facts_from({})))
+
+    assert printed(Has(numbers[first])) and printed(Lacks(("here",)))
+    assert not printed(Has(numbers[first] - 0.1)) and not printed(None)
+
+
+def test_jaws_that_stand_out_print_their_caution() -> None:
+    fake = FakeBook(SHIPPED_QUANTITIES, list(SCOPES.values()), {})
+    assert ["jaws-protrude"] == ids(evaluate(shipped(), fake, facts_from({"hold.jaws_stand_out": True})))
+    assert [] == ids(evaluate(shipped(), fake, facts_from({"hold.jaws_stand_out": False})))
+
+
 OVERHANGS = {"cutter.overhang": (4.0, "boring-bar-overhang"), "hold.overhang": (3.0, "work-overhang")}
 
 
@@ -281,7 +307,9 @@ def test_every_shipped_caution_is_set_off_by_one_of_these_operations() -> None:
     assert {caution.id for caution in shipped().cautions} == {
         *(name for _, names in OPERATIONS.values() for name in names),
         *(name for _, name in OVERHANGS.values()),
+        *(name for _, name in TURNED.values()),
         "bearing-ring-heat",
+        "jaws-protrude",
     }
 
 

@@ -66,15 +66,18 @@ def test_a_job_that_cannot_be_read_gives_no_sheet(job: Path) -> None:
     assert ["job.yaml"] == [path.name for path in job.parent.iterdir()]
 
 
-@pytest.mark.parametrize("name", sorted(path.stem for path in Path(shipped("jobs")).glob("*.yaml")))
+JOBS = sorted(str(path.relative_to(shipped("jobs"))) for path in Path(shipped("jobs")).rglob("*.yaml"))
+
+
+@pytest.mark.parametrize("name", JOBS)
 def test_one_file_that_fetches_nothing_runs_nothing_and_is_small(name: str) -> None:
     from setupcheck.flow import review
     from setupcheck.report.sheet import as_sheet
 
-    found = review(shipped(f"jobs/{name}.yaml"))
+    found = review(shipped(f"jobs/{name}"))
     text = as_sheet(found)
     assert len(text.encode()) < LARGEST
     for outside in ("<script", "<link", "<img", "<iframe", "<object", "@import", "url(", "src=", "xlink"):
         assert outside not in text
     assert {"http://www.w3.org/2000/svg"} >= set(re.findall(r"\w+://[^\s\"'<]+", text))
-    assert text == as_sheet(review(shipped(f"jobs/{name}.yaml"))), "two runs give the same bytes"
+    assert text == as_sheet(review(shipped(f"jobs/{name}"))), "two runs give the same bytes"

@@ -115,6 +115,12 @@ def test_the_print_has_its_cover_every_operation_and_every_table(
     for scope in found.book.instances("setup"):
         if found.book.get("divide.table", scope) is not None:
             assert any(f"INDEX TABLE, op {scope.op}" in text for text in texts)
+    assert all(f"file {found.loaded.sha256[:8]}" in text for text in texts), "a page that nobody can put back"
+    for setup in found.loaded.job.setups:
+        marked = [n for n, text in enumerate(texts) if f"op {setup.op} {found.loaded.job.job} file" in text]
+        (own,) = [number for number, text in enumerate(texts) if re.search(rf"\bOp {setup.op},", text)]
+        assert marked == list(range(own, own + len(marked))), "every page of an operation says whose it is"
+        assert marked
     assert "When a box falls outside" in texts[-1]
     assert f"page {len(texts)} of {len(texts)}" in texts[-1]
     assert all(len(text) > 60 for text in texts), "a page with nothing on it"

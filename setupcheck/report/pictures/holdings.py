@@ -6,16 +6,16 @@ from collections.abc import Iterator, Sequence
 from functools import partial
 
 from setupcheck.flow import Review
-from setupcheck.jobfile.models import Deviation, Dimension
+from setupcheck.jobfile.models import Deviation
 from setupcheck.jobfile.setups import Centre, Clock, Setup, Square
 from setupcheck.quantities.route import machine_of
 from setupcheck.report.pictures import WIDEST, Picture
 from setupcheck.report.pictures.devices import TRIANGLE, triangle
 from setupcheck.report.pictures.fixing import Datum, Scene, before, behind, ends_of, reach_of, widest_of
 from setupcheck.report.pictures.labels import ROW, SIZE, Label, Placed, drawn, placed, rows, spread
-from setupcheck.report.pictures.marks import mark_of, plain, short, stated_size, wrapped
+from setupcheck.report.pictures.marks import mark_of, plain, short, wrapped
 from setupcheck.report.pictures.part import anchor, named, pattern_lines, z_arrow
-from setupcheck.report.pictures.pieces import as_of, held_part, holding, ref_held, refs_cut, together, way
+from setupcheck.report.pictures.pieces import as_of, held_part, holding, ref_held, refs_cut, size_left, together, way
 from setupcheck.report.pictures.shape import Piece, Point, Solid, solid
 from setupcheck.report.pictures.sketch import View, fitted, metal, pitch_line, runs, sheet, stroke, told
 from setupcheck.report.svg import line, words
@@ -206,19 +206,12 @@ def _cut_labels(found: Review, setup: Setup, scene: Scene) -> list[Label]:
 
 def _as_left(found: Review, setup: Setup, piece: Piece) -> str:
     """Name and size of a surface as this operation leaves it."""
-    surface = found.loaded.job.parts[piece.part].surfaces[piece.name]
     name = short(piece.name, SIZE, 26.0)
     states = found.floor.bodies[piece.part].states.get((piece.part, piece.name), [])
     rough = " rough" if any(s.op == setup.op and s.rough for s in states) else ""
-    if piece.kind in ("face", "centre"):
-        return f"{name} at {plain(found, piece.low)}{rough}"
     if piece.kind in ("teeth", "holes", "slot", "lines"):
         return f"{name}{rough}"
-    stated = getattr(surface, "diameter", None)
-    drawn_at = stated.value if isinstance(stated, Dimension) else stated
-    size = 2.0 * (piece.radius or 0.0)
-    as_drawn = drawn_at is not None and abs(size - drawn_at) < 1e-9
-    return f"{name} Ø{short(stated_size(found, piece.part, piece.name), SIZE, 30.0) if as_drawn else plain(found, size)}{rough}"
+    return f"{name} {short(size_left(found, piece), SIZE, 30.0)}{rough}"
 
 
 def _path(scene: Scene, datum: Datum) -> tuple[Point, ...] | None:

@@ -30,6 +30,15 @@ MARKS = (Mark("", "#1f5fa8", ""), Mark("", "#b5460f", "5 1.2"))
 MORE = 0.9
 """How much of the inner part is shown on either side of the outer one, in its lengths or radii. Our choice."""
 
+LEAN = {"bore": "the long fit rules the lean", "shoulder": "the faces of the stop rule the lean"}
+"""What keeps the outer part square, in words."""
+
+GRIPS_FIRST = {
+    "shoulder-end": "the shoulder end grips first: cool or clamp it so that no gap opens",
+    "anywhere": "it may grip anywhere first: a gap can open at the shoulder",
+}
+"""Where a shrinking hub takes hold first, and what comes of it. Source: common practice."""
+
 THINNEST = 0.9
 """A spacer thinner than this on paper is drawn this thick [mm]: it must be seen. Our choice."""
 
@@ -264,8 +273,7 @@ def _key(found: Review, setup: Setup) -> list[str]:
     if join.heat is not None:
         lines_.append(_heat(join))
     if join.square is not None:
-        rules = "the long fit rules the lean" if join.square == "bore" else "the faces of the stop rule the lean"
-        lines_.append(rules)
+        lines_.append(LEAN[join.square])
     stop = join.stop
     if stop is not None:
         against = f" against {short(stop.against, SIZE, 40.0)}" if stop.against else ""
@@ -279,10 +287,8 @@ def _key(found: Review, setup: Setup) -> list[str]:
         lines_.append(f"moved until {on} runs true about {about}, then made fast")
     if join.heat is not None and join.heat.near is not None:
         lines_.append(f"stays in place beside the hub: {short(join.heat.near.what, SIZE, 40.0)}")
-    if join.grips_first == "shoulder-end":
-        lines_.append("the shoulder end grips first: cool or clamp it so that no gap opens")
-    if join.grips_first == "anywhere":
-        lines_.append("it may grip anywhere first: a gap can open at the shoulder")
+    if join.grips_first is not None:
+        lines_.append(GRIPS_FIRST[join.grips_first])
     return [text for one in lines_ for text in wrapped(one, SIZE, WIDEST - 10.0, most=2)]
 
 

@@ -5,6 +5,7 @@ from __future__ import annotations
 import math
 
 from setupcheck.flow import Review
+from setupcheck.jobfile.models import Pattern, Toothing
 from setupcheck.notation import show
 from setupcheck.record import record
 from setupcheck.report.svg import room
@@ -112,26 +113,34 @@ def stated_size(found: Review, part: str, name: str) -> str:
     return f"{plain(found, value.value)}{' measured' if value.measured is not None else ''}"
 
 
+def pattern_size(found: Review, part: str, name: str) -> str:
+    """Count, size and circle of teeth, holes or a slot: `72 on Ø108`, `24 × Ø0.25 on Ø4.75`, `0.25 wide, on Ø5.5`."""
+    surface = found.loaded.job.parts[part].surfaces[name]
+    assert isinstance(surface, Toothing | Pattern)
+    each = ""
+    if isinstance(surface, Pattern) and surface.diameter:
+        each = f" × Ø{plain(found, surface.diameter)}"
+    if surface.kind == "slot":
+        each = f"{plain(found, surface.width)} wide, " if surface.width else ""
+        return f"{each}on Ø{plain(found, surface.on_circle)}"
+    what = " lines" if surface.kind == "lines" else ""
+    return f"{surface.count}{what}{each} on Ø{plain(found, surface.on_circle)}"
+
+
 def spelled(found: Review, part: str, name: str, most: float, size: float) -> str:
     """Name and size of a surface in shop words, within so much room."""
     surface = found.loaded.job.parts[part].surfaces[name]
     match surface.kind:
-        case "teeth":
-            told = f"{surface.count} on Ø{plain(found, surface.on_circle)}"
-        case "holes":
-            each = f"{surface.count} × Ø{plain(found, surface.diameter)}" if surface.diameter else f"{surface.count}"
-            told = f"{each} on Ø{plain(found, surface.on_circle)}"
-        case "lines":
-            told = f"{surface.count} lines on Ø{plain(found, surface.on_circle)}"
-        case "slot":
-            each = f"{plain(found, surface.width)} wide, " if surface.width else ""
-            told = f"{each}on Ø{plain(found, surface.on_circle)}"
+        case "teeth" | "holes" | "slot" | "lines":
+            told = pattern_size(found, part, name)
         case "throat":
             told = f"Ø{plain(found, surface.diameter)} R{plain(found, surface.radius)}"
         case "face" | "centre":
             told = f"at {plain(found, surface.at)}" if surface.kind == "face" else "centre"
         case kind:
             told = f"Ø{stated_size(found, part, name)}"
+            if kind == "taper" and surface.to_diameter is not None:
+                told += f" to {plain(found, surface.to_diameter)}"
             if kind in ("taper", "thread"):
                 told = f"{kind} {told}"
     called = " ".join(clean(name).split())

@@ -259,7 +259,7 @@ def anchor(piece: Piece, view: View, body: Solid, pieces: Sequence[Piece], sign:
     """Where a leader meets a surface, and where it goes up from; None for a surface that is not drawn."""
     found = runs(piece, body, pieces) or pitch_line(piece, view)
     if piece.kind == "teeth" and piece.radius:
-        z = piece.low + 0.3 * (piece.high - piece.low)
+        z = piece.middle if piece.cone else piece.low + 0.3 * (piece.high - piece.low)
         return (view.at(z, piece.radius, sign),)
     if not found:
         return None
@@ -278,7 +278,7 @@ def anchor(piece: Piece, view: View, body: Solid, pieces: Sequence[Piece], sign:
         depth = min(_thickness(body, piece.low, piece.radius or 0.0, inward), 8.0 / view.along)
         return (view.at(piece.low + inward * depth * (0.3 if piece.kind == "holes" else 0.6), r1, sign),)
     share = 0.42 if piece.kind == "bore" else 0.5
-    return (view.at(z1 + share * (z2 - z1), r1, sign),)
+    return (view.at(z1 + share * (z2 - z1), r1 + share * (r2 - r1), sign),)
 
 
 def _lines(found: Review, part: str, view: View, body: Solid, pieces: Sequence[Piece]) -> list[str]:

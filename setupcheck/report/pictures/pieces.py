@@ -6,12 +6,13 @@ from collections.abc import Collection, Sequence
 from dataclasses import replace
 
 from setupcheck.flow import Review
-from setupcheck.jobfile.models import Flat, Pattern, Round, Surface, Throat, Toothing
+from setupcheck.jobfile.models import Dimension, Flat, Pattern, Round, Surface, Throat, Toothing
 from setupcheck.jobfile.names import Ref
 from setupcheck.jobfile.setups import Setup
 from setupcheck.ledger.route import State
 from setupcheck.quantities.shop import outline
 from setupcheck.record import record
+from setupcheck.report.pictures.marks import pattern_size, plain, stated_size
 from setupcheck.report.pictures.shape import Piece
 
 DEDENDUM = 1.25
@@ -27,7 +28,12 @@ class Way:
 
     def of(self, piece: Piece) -> Piece:
         ends = sorted((self.sense * piece.low + self.shift, self.sense * piece.high + self.shift))
-        return replace(piece, low=ends[0], high=ends[1], facing=self.sense * piece.facing)
+        sides = _other_way(piece.ends) if self.sense < 0 else piece.ends
+        return replace(piece, low=ends[0], high=ends[1], facing=self.sense * piece.facing, ends=sides)
+
+
+def _other_way(ends: tuple[float, float] | None) -> tuple[float, float] | None:
+    return (ends[1], ends[0]) if ends is not None else None
 
 
 def finished(found: Review, part: str) -> list[Piece]:
@@ -85,6 +91,22 @@ def holding(found: Review, setup: Setup) -> Setup:
     return setup
 
 
+def size_left(found: Review, piece: Piece) -> str:
+    """Size or place of a surface as an operation left it, in the units of the file: `Ø48.6`, `Ø48 h6`, `at 20.4`.
+
+    A pattern has its count and circle, which no operation changes: `72 on Ø108`.
+    """
+    if piece.kind in ("face", "centre"):
+        return f"at {plain(found, piece.low)}"
+    if piece.kind in ("teeth", "holes", "slot", "lines"):
+        return pattern_size(found, piece.part, piece.name)
+    stated = getattr(found.loaded.job.parts[piece.part].surfaces[piece.name], "diameter", None)
+    drawn_at = stated.value if isinstance(stated, Dimension) else stated
+    size = 2.0 * (piece.radius or 0.0)
+    as_drawn = drawn_at is not None and abs(size - drawn_at) < 1e-9
+    return f"Ø{stated_size(found, piece.part, piece.name) if as_drawn else plain(found, size)}"
+
+
 def held_part(found: Review, setup: Setup) -> str:
     """The part a setup holds, as the walk found it."""
     return found.floor.part_of[setup.op]
@@ -125,12 +147,15 @@ def _piece(found: Review, part: str, name: str, surface: Surface, op: int | None
         surface.made == "stock",
         trims=isinstance(surface, Flat) and op is not None and _towards_tool(found, part, op) == shape.facing,
     )
+    if isinstance(surface, Round) and surface.to_diameter is not None:
+        piece = replace(piece, ends=(surface.diameter.value / 2.0, surface.to_diameter / 2.0))
     if isinstance(surface, Round | Flat) and surface.hole:
         return replace(piece, hole=surface.hole / 2.0)
     if isinstance(surface, Throat):
         return replace(piece, hollow=surface.radius)
-    if isinstance(surface, Toothing):
-        return replace(piece, root=_root(found, part, name, surface, op))
+    if isinstance(surface, Toothing):  # the root of a cone is not drawn: its depth is stated at one end alone
+        cone = surface.cone is not None
+        return replace(piece, cone=cone, root=None if cone else _root(found, part, name, surface, op))
     if isinstance(surface, Pattern):
         return replace(piece, size=surface.diameter or surface.width)
     return piece
@@ -143,7 +168,9 @@ def _left(found: Review, piece: Piece, state: State) -> Piece:
     sense, shift = found.floor.frames.get(piece.part, (1, 0.0))
     ends = sorted((sense * (state.low - shift), sense * (state.high - shift)))
     radius = state.diameter / 2.0 if state.diameter and state.diameter > 0.0 else piece.radius
-    return replace(piece, low=ends[0], high=ends[1], radius=radius)
+    left = (radius or 0.0) - (piece.radius or 0.0)  # stock on a taper lies on all of it
+    sides = (piece.ends[0] + left, piece.ends[1] + left) if piece.ends is not None else None
+    return replace(piece, low=ends[0], high=ends[1], radius=radius, ends=sides)
 
 
 def _towards_tool(found: Review, part: str, op: int) -> int:

@@ -28,6 +28,7 @@ class Piece:
     facing       +1 or -1 of a face, else 0;  stock  the blank brings it;  hole  radius of a hole through it [mm]
     hollow       radius of a throat's hollow [mm];  root  radius at the root of teeth [mm];  size  of a hole or slot [mm]
     trims        a face turned towards the tool: of the stock, nothing is left before it
+    ends         radii of a taper at `low` and at `high` [mm], `radius` being the larger;  cone  teeth stand round a cone
     """
 
     part: str
@@ -43,10 +44,18 @@ class Piece:
     root: float | None = None
     size: float | None = None
     trims: bool = False
+    ends: tuple[float, float] | None = None
+    cone: bool = False
 
     @property
     def middle(self) -> float:
         return (self.low + self.high) / 2.0
+
+    def radius_at(self, z: float) -> float:
+        """Radius at a height, straight from end to end of a taper [mm]; 0 where none is stated."""
+        if self.ends is None or self.high <= self.low:
+            return self.radius or 0.0
+        return self.ends[0] + (self.ends[1] - self.ends[0]) * (z - self.low) / (self.high - self.low)
 
 
 @record
@@ -154,9 +163,8 @@ def _outside(
     found: list[Point | None] = []
     for low, high in spans:
         middle = (low + high) / 2.0
-        over = [p.radius or 0.0 for p in rounds if p.low <= middle <= p.high]
-        over = over or [p.radius or 0.0 for p in stock if p.low <= middle <= p.high]
-        found.append((max(over), max(over)) if over else None)
+        over = [p for p in rounds if p.low <= middle <= p.high] or [p for p in stock if p.low <= middle <= p.high]
+        found.append((max(p.radius_at(low) for p in over), max(p.radius_at(high) for p in over)) if over else None)
     for i, beside in (
         ((0, 1), (-1, -2)) if len(spans) > 1 else ()
     ):  # a strip before a turned end went with what was turned
@@ -177,8 +185,8 @@ def _outside(
             )
             ends = _bridged(
                 stretch,
-                _radius(found, left),
-                _radius(found, right),
+                _radius(found, left, 1),
+                _radius(found, right, 0),
                 pieces,
                 (low, high),
             )
@@ -187,9 +195,9 @@ def _outside(
     return done, tuple(unstated)
 
 
-def _radius(found: Sequence[Point | None], at: int | None) -> float | None:
+def _radius(found: Sequence[Point | None], at: int | None, end: int) -> float | None:
     ends = found[at] if at is not None else None
-    return ends[0] if ends is not None else None
+    return ends[end] if ends is not None else None
 
 
 def _bridged(stretch: Point, left: float | None, right: float | None, pieces: Sequence[Piece], span: Point) -> Point:

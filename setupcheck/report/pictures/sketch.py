@@ -218,6 +218,8 @@ def runs(piece: Piece, solid: Solid, pieces: Sequence[Piece]) -> list[list[Point
 def _along(piece: Piece, profile: Sequence[Point]) -> list[list[Point]]:
     if not piece.radius:
         return []
+    if piece.ends is not None:
+        return [[(piece.low, piece.ends[0]), (piece.high, piece.ends[1])]]
     found = []
     for (z1, r1), (z2, r2) in itertools.pairwise(profile):
         low, high = max(z1, piece.low), min(z2, piece.high)
@@ -264,8 +266,11 @@ def pitch_line(piece: Piece, view: View) -> list[list[Point]]:
     """Centre lines of teeth, holes and slots, as heights and radii; at least so long that the dashes show."""
     if not piece.radius or piece.kind not in ("teeth", "holes", "slot", "lines"):
         return []
-    more = max(2.0, 6.0 - view.along * (piece.high - piece.low) / 2.0) / view.along
-    return [[(piece.low - more, piece.radius), (piece.high + more, piece.radius)]]
+    low, high = (
+        (piece.middle, piece.middle) if piece.cone else (piece.low, piece.high)
+    )  # a circle of a cone has one height
+    more = max(2.0, 6.0 - view.along * (high - low) / 2.0) / view.along
+    return [[(low - more, piece.radius), (high + more, piece.radius)]]
 
 
 def sheet(width: float, height: float, *, title: str, parts: Sequence[str]) -> str:

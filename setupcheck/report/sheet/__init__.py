@@ -7,11 +7,12 @@ from pathlib import Path
 from typing import TYPE_CHECKING
 
 from setupcheck.report.sheet.checks import OUTSIDE
-from setupcheck.report.sheet.inline import inline
+from setupcheck.report.sheet.inline import inline, style_sheet
 from setupcheck.report.sheet.pages import sheet_of
 
 if TYPE_CHECKING:
     from jinja2 import Template
+    from markupsafe import Markup
 
     from setupcheck.flow import ReadBack, Review
 
@@ -21,8 +22,18 @@ def as_sheet(found: Review, read: ReadBack | None = None) -> str:
 
     read  a division test read back, drawn beside the prediction
     """
-    told = _template().render(sheet=sheet_of(found, read), outside=OUTSIDE)
+    from markupsafe import Markup
+
+    told = _template().render(sheet=sheet_of(found, read), outside=OUTSIDE, drawing_style=Markup(style_sheet()))
     return "\n".join(line for line in (line.rstrip() for line in told.splitlines()) if line) + "\n"
+
+
+def _coded(text: str) -> Markup:
+    """Text with what stands between backticks set as code."""
+    from markupsafe import Markup
+
+    told = (Markup("<code>{}</code>" if i % 2 else "{}").format(part) for i, part in enumerate(text.split("`")))
+    return Markup("").join(told)
 
 
 @cache
@@ -34,4 +45,5 @@ def _template() -> Template:
     here = FileSystemLoader(Path(__file__).parent)
     made = Environment(loader=here, autoescape=True, undefined=StrictUndefined, trim_blocks=True, lstrip_blocks=True)
     made.filters["drawn"] = lambda drawing: Markup(inline(drawing))
+    made.filters["coded"] = _coded
     return made.get_template("sheet.html")

@@ -5,16 +5,26 @@ from __future__ import annotations
 from setupcheck.flow import Review
 from setupcheck.quantities.gates import Gate
 from setupcheck.quantities.length_gates import LengthGate
-from setupcheck.report.gates import bands_of, ends_of, is_far, is_idle, lengths_of, near_in_words
+from setupcheck.record import record
+from setupcheck.report.gates import bands_of, ends_of, is_enough, is_far, is_idle, lengths_of, near_in_words
 from setupcheck.report.sheet.showing import paper
 from setupcheck.report.wording import on_the_dial, title_of
 
-FREE = "not critical"
+
+@record
+class Accept:
+    """What may be accepted of a reading, and the requirement that limits it (empty where none does)."""
+
+    what: str
+    by: str = ""
+
+
+FREE = Accept("not critical")
 LOST = "nothing here alone brings {} inside"
 
 
-def accepted(found: Review) -> dict[str, str]:
-    """What to accept by the path of the entry: `up to 5.2 um; backlash-swing at teeth about bearings`.
+def accepted(found: Review) -> dict[str, Accept]:
+    """What to accept by the path of the entry: `up to 5.2 um`, because of `backlash-swing at teeth about bearings`.
 
     An entry that no requirement looks at closely is not critical; one that no requirement hears of is not among them.
     """
@@ -26,10 +36,12 @@ def accepted(found: Review) -> dict[str, str]:
     return told
 
 
-def _dial(found: Review, gate: Gate, titles: dict[str, str], *, inches: bool) -> str:
+def _dial(found: Review, gate: Gate, titles: dict[str, str], *, inches: bool) -> Accept:
     by = titles.get(gate.by, gate.by)
     if gate.reading is not None and gate.reading <= 0.0:
-        return LOST.format(by)
+        return Accept(LOST.format(by))
+    if gate.reading is not None and is_enough(gate):
+        return Accept(f"up to {on_the_dial(gate.reading, inches=inches, step=gate.indicator)}: indicate no finer", by)
     if is_idle(gate) or gate.reading is None:
         return FREE
     least = (
@@ -38,15 +50,25 @@ def _dial(found: Review, gate: Gate, titles: dict[str, str], *, inches: bool) ->
     high = f", high at {paper(gate.high_at, 30)}" if gate.high_at else ""
     most = on_the_dial(gate.reading, inches=inches, step=gate.indicator)
     near = near_in_words(bands_of(found, gate), gate, inches=inches)
-    return f"{least}up to {most}{high}{near}; {by}"
+    return Accept(f"{least}up to {most}{high}{near}", by)
 
 
-def _length(gate: LengthGate, titles: dict[str, str], *, inches: bool) -> str:
+def _length(gate: LengthGate, titles: dict[str, str], *, inches: bool) -> Accept:
     if gate.lost:
-        return LOST.format(titles.get(gate.by_low, gate.by_low))
+        return Accept(LOST.format(titles.get(gate.by_low, gate.by_low)))
     if is_far(gate):
         return FREE
     low, high = ends_of(gate, inches=inches)
-    span = f"{low} to {high}" if low and high else f"at least {low}" if low else f"at most {high}"
+    span = _span(low, high) if low and high else f"at least {low}" if low else f"at most {high}"
     by = [titles.get(key, key) for key, end in ((gate.by_low, low), (gate.by_high, high)) if end]
-    return f"{span}; {' and '.join(dict.fromkeys(by))}"
+    return Accept(span, " and ".join(dict.fromkeys(by)))
+
+
+def _span(low: str, high: str) -> str:
+    """Both ends with their unit once.
+
+    >>> _span("-20 um", "+16 um"), _span("0.9 mm", "1 in")
+    ('-20 to +16 um', '0.9 mm to 1 in')
+    """
+    number, _, unit = low.rpartition(" ")
+    return f"{number} to {high}" if high.endswith(f" {unit}") else f"{low} to {high}"

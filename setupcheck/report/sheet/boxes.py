@@ -10,21 +10,25 @@ from collections.abc import Iterator, Mapping, Sequence
 from setupcheck.flow import Review
 from setupcheck.jobfile.models import Deviation, Dimension, Part, Round, Toothing
 from setupcheck.jobfile.setups import Cut, Hold, Join, Setup
+from setupcheck.jobfile.travel import Travel
+from setupcheck.quantities.devices import DEVICES
 from setupcheck.record import record
-from setupcheck.report.sheet.accept import accepted
+from setupcheck.report.sheet.accept import Accept, accepted
 from setupcheck.report.sheet.showing import Showing
 from setupcheck.report.wording import clean
 
+NO_LIMIT = Accept("")
 PLACES = 8
 """Places round a wheel at which backlash is read. Source: common practice."""
 
 
 @record
 class Cell:
-    """One box: what stands behind the row's key (`.measured`), its unit or a word for it."""
+    """One box: what stands behind the row's key (`.measured`), its unit or a word for it; wide where two values go in."""
 
     end: str
     unit: str
+    wide: bool = False
 
 
 @record
@@ -34,7 +38,7 @@ class Row:
     key: str
     says: str
     plan: str
-    accept: str
+    accept: Accept
     line: int
     cells: tuple[Cell, ...]
 
@@ -67,11 +71,11 @@ class Boxes:
         return self._row(key, says, self.show.size(given), cells)
 
     def plain(self, key: str, says: str, plan: str, unit: str) -> Row:
-        """An entry that is one value."""
-        return self._row(key, says, plan, (Cell("", unit),))
+        """An entry that is one value, or a list of two."""
+        return self._row(key, says, plan, (Cell("", unit, wide=unit.startswith("[")),))
 
     def _row(self, key: str, says: str, plan: str, cells: tuple[Cell, ...]) -> Row:
-        return Row(key, clean(says), plan, self.accept.get(key, ""), self.found.loaded.line(key), cells)
+        return Row(key, clean(says), plan, self.accept.get(key, NO_LIMIT), self.found.loaded.line(key), cells)
 
     # -- one setup -----------------------------------------------------------------------------------------------------
 
@@ -92,6 +96,8 @@ class Boxes:
                         f"{path}.head.mid_plane.error", "mid-plane, how far off it was found", middle.error, signed=True
                     )
                 )
+        if setup.travel is not None:
+            rows += self._travel(setup.travel, f"{path}.travel")
         for name, cut in setup.cut.items():
             rows += self._cut(setup, name, cut, f"{path}.cut.{name}")
         if setup.join is not None:
@@ -105,7 +111,12 @@ class Boxes:
         ):
             if entry is None:
                 continue
-            if entry.runout is not None or entry.clearance is None:
+            for axis in ("x", "y") if DEVICES[entry.by].xy else ():
+                zero = getattr(entry, axis)
+                plan = f"± {self.show.fine(zero)}" if zero is not None else ""
+                says = f"{entry.on} found along {axis.upper()}, known to"
+                yield self.plain(f"{path}.{step}.{axis}", says, plan, f"± {self.fine}")
+            if entry.runout is not None or (entry.clearance is None and not DEVICES[entry.by].xy):
                 yield self.reading(f"{path}.{step}.runout", place.format(entry.on), entry.runout)
             if entry.clearance is not None:
                 plan = f"{self.show.fine(entry.clearance[0])} to {self.show.fine(entry.clearance[1])}"
@@ -137,6 +148,13 @@ class Boxes:
             if isinstance(length, Dimension):
                 yield self.size(f"{path}.spacers[{number}].length", f"thickness of {name}", length)
 
+    def _travel(self, travel: Travel, path: str) -> Iterator[Row]:
+        over = self.show.length(travel.over)
+        for key, value, way in (("beside", travel.beside, "sideways"), ("nearer", travel.nearer, "towards the cutter")):
+            if value is not None:
+                says = f"bar in place of the work, {way}, over {over}"
+                yield self.reading(f"{path}.{key}", says, value, signed=True)
+
     def _cut(self, setup: Setup, name: str, cut: Cut, path: str) -> Iterator[Row]:
         ref = self.found.loaded.ref(name, self.found.floor.part_of.get(setup.op))
         surface = self.found.loaded.job.parts[ref.part].surfaces[ref.surface]
@@ -146,6 +164,10 @@ class Boxes:
             yield self.size(key, f"diameter of {ref.surface}", surface.diameter)
         if cut.error is not None:
             yield self.reading(f"{path}.error", f"length of {name}, off its plan", cut.error, signed=True)
+        if cut.off_centre is not None:
+            yield self.reading(f"{path}.off_centre", f"cutter of {name}, off the axis", cut.off_centre, signed=True)
+        for axis, at in (cut.spindle_to_axis or {}).items():
+            yield self.size(f"{path}.spindle_to_axis.{axis}", f"spindle over the table's axis, {axis.upper()}", at)
         if cut.depth_from is not None:
             touched = cut.depth_from
             key = f"{path}.depth_from"
@@ -160,7 +182,7 @@ class Boxes:
     def _prove_out(self, readings: Mapping[str, float], path: str, surface: object) -> Iterator[Row]:
         count = surface.count if isinstance(surface, Toothing) else 0
         names = list(readings) or [f"gap {n}" for n in _round_the_wheel(count, 4)]
-        cells = tuple(Cell(f".readings.{name}", f"{name}, {self.fine}") for name in names[:PLACES])
+        cells = tuple(Cell(f".readings.{name}", self.fine) for name in names[:PLACES])
         yield self._row(
             path, "dial over the ball in each prove-out gap", "", (*cells, Cell(".uncertainty", f"± {self.fine}"))
         )
@@ -251,7 +273,7 @@ class Boxes:
         )
         if isinstance(wheel, Toothing):
             gaps = _round_the_wheel(wheel.count, PLACES)
-            places = tuple(Cell(f".readings.gap {n}", f"gap {n}, {self.fine}") for n in gaps)
+            places = tuple(Cell(f".readings.gap {n}", self.fine) for n in gaps)
             says = "backlash round the wheel, the number of the gap at the worm; end float included or taken-out"
             more = (
                 Cell(".uncertainty", f"± {self.fine}"),

@@ -10,6 +10,18 @@ from setupcheck.report.svg import THIN, number
 
 ROOT = {"font-size": "3", "stroke-width": number(THIN), "stroke-linejoin": "round"}
 """What most elements of a drawing say, mm of paper."""
+STYLES = {
+    "k": {"stroke": "black", "stroke-width": "0.25"},
+    "l": {"stroke": "black"},
+    "n": {"fill": "none", "stroke": "black"},
+    "o": {"fill": "none", "stroke": "black", "stroke-width": "0.35"},
+    "p": {"fill": "none", "stroke": "black", "stroke-width": "0.245"},
+    "h": {"fill": "none", "stroke": "#555555", "stroke-width": "0.1"},
+    "w": {"fill": "white", "stroke": "black", "stroke-width": "0.2"},
+    "m": {"text-anchor": "middle"},
+    "e": {"text-anchor": "end"},
+}
+"""Classes for what many elements say alike. The page's own style sheet spells them out."""
 STEPS = 100
 """Steps of a coordinate in a millimetre of paper: finer than any printer. Source: our choice."""
 
@@ -18,6 +30,7 @@ _POINTS = re.compile(r'<(polyline|polygon) points="([^"]+)"((?: [a-z-]+="[^"]*")
 _PATH = re.compile(r'<path d="([MLHV0-9. -]+)"((?: [a-z-]+="[^"]*")*)/>')
 _STEP = re.compile(r"([MLHV])([^MLHV]*)")
 _GROUND = re.compile(r'<rect width="[^"]+" height="[^"]+" fill="white"/>\n')
+_ELEMENT = re.compile(r"<[a-z]+ [^>]*>")
 _PLACE = re.compile(r'(?<= )(x|y|cx|cy|width|height)="(-?\d+\.\d{3})"')
 
 Way = list[tuple[int, int]]
@@ -30,7 +43,26 @@ def inline(drawing: str) -> str:
     for key, value in ROOT.items():
         rest = rest.replace(f' {key}="{value}"', "")
     head = head.replace(' xmlns="http://www.w3.org/2000/svg"', "") + "".join(f' {k}="{v}"' for k, v in ROOT.items())
-    return f"{head}>" + "\n".join(_joined(_PLACE.sub(_rounded, rest).split("\n")))
+    return f"{head}>" + _ELEMENT.sub(_classed, "\n".join(_joined(_PLACE.sub(_rounded, rest).split("\n"))))
+
+
+def style_sheet() -> str:
+    """The classes as CSS, one rule a class: `.e{text-anchor:end}`."""
+    rules = (f".{name}{{{';'.join(f'{k}:{v}' for k, v in style.items())}}}" for name, style in STYLES.items())
+    return " ".join(f"svg {rule}" for rule in rules)
+
+
+def _spelled(style: dict[str, str]) -> str:
+    return "".join(f' {key}="{value}"' for key, value in style.items())
+
+
+_SPELLED = {_spelled(style): f' class="{name}"' for name, style in STYLES.items()}
+_SAID = re.compile("|".join(sorted(_SPELLED, key=len, reverse=True)))
+
+
+def _classed(found: re.Match[str]) -> str:
+    """One element with the longest style it says as a class: one class at most, what else it says stays."""
+    return _SAID.sub(lambda said: _SPELLED[said[0]], found[0], count=1)
 
 
 def _rounded(found: re.Match[str]) -> str:

@@ -10,7 +10,7 @@ from setupcheck.notation import show
 from setupcheck.quantities.book import Known
 from setupcheck.quantities.index_table import IndexTable
 from setupcheck.quantities.scopes import stack_of
-from setupcheck.record import record
+from setupcheck.report.causes import cause_in_parts
 from setupcheck.report.heating_plan import heating_plans_as_data
 from setupcheck.report.index_table import OnPaper, on_paper
 from setupcheck.report.insert import inserts
@@ -18,15 +18,16 @@ from setupcheck.report.insert import readings as ground
 from setupcheck.report.joint import joints
 from setupcheck.report.pictures import Picture, pictures
 from setupcheck.report.remedies import remedy_in_words
-from setupcheck.report.sheet.boxes import Boxes, Row
-from setupcheck.report.sheet.checks import checks
+from setupcheck.report.sheet.boxes import Boxes
+from setupcheck.report.sheet.checks import checks, sign_off
+from setupcheck.report.sheet.records import Caution, Operation, Share, Sheet, Step, Trouble
 from setupcheck.report.sheet.showing import paper
-from setupcheck.report.sheet.words import Said, Words
+from setupcheck.report.sheet.words import ROLE, Said, Words
 from setupcheck.report.text import counts, limits_in_words
 from setupcheck.report.uncomputed import in_lines, uncomputed
 from setupcheck.report.wording import finer, title_of, unit_of
 from setupcheck.report.worked_out import worked_out
-from setupcheck.rulebook.records import CautionLine
+from setupcheck.rulebook.records import CautionLine, Finding
 
 DATUM = {
     "stock": "stock, as the blank brings it",
@@ -53,112 +54,6 @@ MOST_PLACES = 2
 Source: our choice, so that what is special to a setup is not lost among what always holds."""
 
 
-@record
-class Caution:
-    """A caution once, with where it applies and whether somebody signed for it."""
-
-    text: str
-    where: str
-    state: str
-    stop: bool
-
-
-@record
-class Trouble:
-    """A finding that is not passed, and what to do about it."""
-
-    verdict: str
-    rule: str
-    at: str
-    line: int
-    message: str
-    remedy: str
-
-
-@record
-class Step:
-    """One line of the route."""
-
-    op: int
-    machine: str
-    held: tuple[Said, ...]
-    cuts: tuple[str, ...]
-
-
-@record
-class Share:
-    """What one operation adds to one requirement."""
-
-    title: str
-    part: str
-    worst: str
-    room: str
-    inside: bool
-
-
-@record
-class Operation:
-    """One page: everything that one operation needs at the machine."""
-
-    op: int
-    machine: str
-    note: str
-    toward: str
-    cautions: tuple[Caution, ...]
-    general: bool
-    troubles: tuple[Trouble, ...]
-    held: tuple[Said, ...]
-    head: tuple[Said, ...]
-    divide: tuple[Said, ...]
-    cuts: tuple[Said, ...]
-    passes: tuple[tuple[str, list[tuple[str, str]]], ...]
-    joined: tuple[Said, ...]
-    worked: tuple[Said, ...]
-    heating: tuple[str, ...]
-    boxes: tuple[Row, ...]
-    shares: tuple[Share, ...]
-    checks: tuple[str, ...]
-    pictures: tuple[Picture, ...]
-
-
-@record(eq=False)
-class Sheet:
-    """All pages."""
-
-    title: str
-    job: str
-    revision: str
-    file: str
-    sha256: str
-    version: str
-    rule_book: str
-    rule_hash: str
-    verdict: str
-    counts: str
-    units: str
-    room: str
-    parts: tuple[Said, ...]
-    troubles: tuple[Trouble, ...]
-    unsigned: int
-    stopped: str
-    cautions: tuple[Caution, ...]
-    data: tuple[Said, ...]
-    asked: tuple[str, ...]
-    route: tuple[Step, ...]
-    incoming: tuple[Row, ...]
-    operations: tuple[Operation, ...]
-    tables: tuple[OnPaper, ...]
-    texts: tuple[tuple[str, str], ...]
-    finished: tuple[Row, ...]
-    grid: bool
-    overview: tuple[Picture, ...]
-    transfers: tuple[Picture, ...]
-    stacks: tuple[Picture, ...]
-    more_stacks: int
-    not_computed: tuple[str, ...]
-    closing: str
-
-
 def sheet_of(found: Review, read: ReadBack | None = None) -> Sheet:
     """Everything that goes on the sheet of a job."""
     from setupcheck import __version__
@@ -174,7 +69,7 @@ def sheet_of(found: Review, read: ReadBack | None = None) -> Sheet:
     used |= {f"hold-{setup.op}" for setup in job.setups if setup.keeps is not None}  # drawn at the operation they keep
     overview = tuple(p for name, p in drawn.items() if not name.startswith("stack-") and name not in used)
     left = [s for s in found.evaluation.cautions if s.severity == "stop-and-check" and not s.answered]
-    limited = " of what this version computes" if found.verdict == "pass" and uncomputed(loaded) else ""
+    limited = "of what this version computes" if found.verdict == "pass" and uncomputed(loaded) else ""
     return Sheet(
         title=paper(job.title),
         job=paper(job.job or "", 60),
@@ -184,12 +79,17 @@ def sheet_of(found: Review, read: ReadBack | None = None) -> Sheet:
         version=__version__,
         rule_book=found.rulebook.version,
         rule_hash=found.rulebook.sha256[:16],
-        verdict=f"{found.verdict.upper()}{limited}",
+        verdict=found.verdict.upper(),
+        limited=limited,
         counts=counts(found),
         units="inch" if found.book.inches else "mm",
         room=f"{job.room:g} degC",
-        parts=tuple(
-            Said(paper(name, 60), paper(part.material or "material not stated", 60)) for name, part in job.parts.items()
+        parts=(
+            *_house(found),
+            *(
+                Said(paper(name, 60), paper(part.material or "material not stated", 60))
+                for name, part in job.parts.items()
+            ),
         ),
         troubles=tuple(_troubles(found)),
         unsigned=len(left),
@@ -209,8 +109,16 @@ def sheet_of(found: Review, read: ReadBack | None = None) -> Sheet:
         stacks=stacks,
         more_stacks=more,
         not_computed=tuple(in_lines(uncomputed(loaded))),
+        sign_off=sign_off(found),
+        mark=_mark(found),
         closing=found.rulebook.closing_line,
     )
+
+
+def _mark(found: Review) -> str:
+    """Job and file in a few plain characters, for the edge of every page: they stand inside the style sheet there."""
+    job = "".join(c if c.isascii() and (c.isalnum() or c in " .-_/") else "-" for c in (found.loaded.job.job or ""))
+    return " ".join(f"{job[:30]} file {found.loaded.sha256[:8]}".split())
 
 
 def _tightest(found: Review, drawn: dict[str, Picture]) -> tuple[tuple[Picture, ...], int]:
@@ -228,16 +136,27 @@ def _tightest(found: Review, drawn: dict[str, Picture]) -> tuple[tuple[Picture, 
 def _troubles(found: Review, op: int | None = None) -> list[Trouble]:
     """What is not passed, in the whole job or in one operation."""
     return [
-        Trouble(f.verdict, f.rule, paper(f.at or "job", 80), f.line, paper(f.message, 400), paper(_do(found, f), 400))
+        Trouble(f.verdict, f.rule, paper(f.at or "job", 80), f.line, paper(_said(f), 400), paper(_do(found, f), 400))
         for f in found.evaluation.findings
         if f.verdict in ("fail", "open", "warn", "waived") and op in (None, f.op)
     ]
 
 
-def _do(found: Review, finding: object) -> str:
-    from setupcheck.rulebook import Finding
+def _said(finding: Finding) -> str:
+    """The message, and what a house file did to the rule."""
+    return f"{finding.message}; by {finding.house}" if finding.house else finding.message
 
-    assert isinstance(finding, Finding)
+
+def _house(found: Review) -> tuple[Said, ...]:
+    """The house file that acts, as a line of the cover."""
+    house = found.house
+    if house is None:
+        return ()
+    return (Said("House file", f"{paper(house.name, 60)}: {paper(house.file, 80)}, sha256 {house.sha256[:16]}"),)
+
+
+def _do(found: Review, finding: Finding) -> str:
+    """What to do about a finding; empty where the rule book knows nothing."""
     if finding.verdict == "open" and finding.missing:
         return f"Fill {', '.join(finding.missing[:4])}"
     if finding.verdict == "waived":
@@ -272,6 +191,7 @@ def _data(found: Review, *, op: bool) -> tuple[Said, ...]:
 
 
 def _asked(found: Review) -> list[str]:
+    """Each requirement with its figure and its limit, in the order of the job."""
     lines = []
     for scope in found.book.instances("stack"):
         result = found.results.get(scope.key)
@@ -284,27 +204,26 @@ def _asked(found: Review) -> list[str]:
 
 
 def _step(found: Review, setup: Setup) -> Step:
+    """One setup as a line of the route."""
     words = Words(found)
     held = []
     if setup.hold is not None:
-        for step in ("centre", "and_centre", "square", "stop", "clock"):
+        for step, role in ROLE.items():
             entry = getattr(setup.hold, step)
             if entry is not None:
-                held.append(Said(_ROLE[step], f"{paper(entry.on, 40)}, {_datum(found, f'{setup.op}/{step}')}"))
+                held.append(Said(role, f"{paper(entry.on, 40)}, {_datum(found, f'{setup.op}/{step}')}"))
     elif setup.keeps is not None:
         held.append(Said("As before", f"the holding of op {setup.keeps}, never opened"))
     if setup.join is not None:
         held.append(
             Said("Joined", f"{paper(setup.join.outer, 60)} on {paper(setup.join.inner, 60)} by {setup.join.by}")
         )
-    cuts = tuple(f"{said.about}: {said.text.split('; ')[0]}" for said in words.cuts(setup))
+    cuts = tuple(f"{said.about}: {said.text}" for said in words.goals(setup))
     return Step(setup.op, _machine(setup), tuple(held), cuts)
 
 
-_ROLE = {"centre": "Axis", "and_centre": "Second plane", "square": "Lean", "stop": "Length", "clock": "Angle"}
-
-
 def _datum(found: Review, key: str) -> str:
+    """In what state a surface is when it is held on; key  `40/centre`."""
     datum = found.floor.datums.get(key)
     if datum is None:
         return "state not known"
@@ -336,7 +255,11 @@ def _operation(found: Review, setup: Setup, boxes: Boxes, drawn: dict[str, Pictu
         cautions=tuple(_caution(c, [c]) for c in own),
         general=len(own) < len(mine),
         troubles=tuple(_troubles(found, setup.op)),
-        held=(*keeps, *(words.hold(setup.hold) if setup.hold is not None else [])),
+        held=(
+            *keeps,
+            *(words.hold(setup.hold) if setup.hold is not None else []),
+            *(words.travel(setup.travel) if setup.travel is not None else []),
+        ),
         head=tuple(words.head(setup.head)) if setup.head is not None else (),
         divide=tuple(words.divide(setup.divide, scope)) if setup.divide is not None else (),
         cuts=tuple(words.cuts(setup)),
@@ -345,7 +268,7 @@ def _operation(found: Review, setup: Setup, boxes: Boxes, drawn: dict[str, Pictu
         worked=tuple(
             Said(one.about.removeprefix(about), one.text)
             for one in _data(found, op=True)
-            if one.about.startswith(about)
+            if one.about.startswith(about) and one.about != f"{about}index"  # stands under the dividing
         ),
         heating=tuple(steps),
         boxes=tuple(boxes.of_setup(setup)),
@@ -364,7 +287,7 @@ def _list(value: object) -> list[object]:
 
 
 def _pictures(found: Review, setup: Setup, drawn: dict[str, Picture]) -> list[Picture]:
-    """The holding, the head, the heat, and the stack in which this operation weighs most."""
+    """The holding, unless it is that of an operation before, the head and the heat."""
     hold = [] if setup.keeps is not None else [f"hold-{setup.op}"]
     names = [*hold, f"head-{setup.op}", f"heating-{setup.op}"]
     return [drawn[name] for name in names if name in drawn]
@@ -377,9 +300,10 @@ def _shares(found: Review, op: int) -> list[Share]:
         result = found.results.get(scope.key)
         if result is None:
             continue
-        mine = sum(s.worst for s in result.combined.shares if s.cause.op == op)
-        if mine <= 0.0:
+        own = [s for s in result.combined.shares if s.cause.op == op and s.worst > 0.0]
+        if not own:
             continue
+        mine, most = sum(s.worst for s in own), max(own, key=lambda s: s.worst)
         unit, digits = unit_of(found.book, scope)
         fine, more = finer(stack_of(scope).unit, inches=found.book.inches)
         margin = result.margin
@@ -387,6 +311,7 @@ def _shares(found: Review, op: int) -> list[Share]:
         share = Share(
             paper(title_of(scope), 80),
             show(mine, fine, more),
+            paper(f"{cause_in_parts(most.cause.key)[1]} {show(most.worst, fine, more)}", 100),
             limits_in_words(result, unit, digits),
             room,
             margin is None or margin >= 0.0,

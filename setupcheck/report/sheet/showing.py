@@ -79,9 +79,8 @@ class Showing:
             limits = ""
             if given.lower is not None and given.upper is not None and not given.fit:
                 same = abs(given.lower + given.upper) < 1e-9
-                limits = (
-                    f" ± {self.fine(given.upper)}" if same else f" {self._sign(given.lower)}, {self._sign(given.upper)}"
-                )
+                both = f" {self._sign(given.upper)} / {self._sign(given.lower)}"
+                limits = f" ± {self.fine(given.upper)}" if same else both
             parts.append(f"{number}{fit} {unit}{limits}")
         if given.measured is not None:
             parts.append(f"measured {self.length(given.measured)}")

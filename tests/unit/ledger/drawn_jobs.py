@@ -131,7 +131,7 @@ SURFACES: Node = {
     "seat": {"kind": "face", "at": 20, "facing": "+z", "diameter": 110},
     "rim": {"kind": "cylinder", "diameter": 114, "from": 4, "to": 20},
     "groove": {"kind": "cylinder", "diameter": 100, "from": 12, "to": 14},
-    "teeth": {"kind": "teeth", "count": TEETH, "on_circle": 108, "at": 12, "pressure_angle": "20 deg"},
+    "teeth": {"kind": "teeth", "count": TEETH, "on_circle": 108, "at": 12, "width": 16, "pressure_angle": "20 deg"},
     "ring": {"kind": "holes", "count": 6, "on_circle": 70, "at": 20, "angle": "10 deg"},
     "bore": {"kind": "bore", "diameter": 32, "from": 0, "to": 26},
     "back": {"kind": "face", "at": 0, "facing": "-z", "diameter": 100},
@@ -159,6 +159,9 @@ REQUIRE: list[Node] = [
     {"what": "position", "of": "wheel.ring", "about": "wheel.rim", "clock": "wheel.teeth", "at_most": "0.2 mm"},
     {"what": "chord", "of": "wheel.ring", "about": "wheel.bore", "at_most": "50 um"},
     {"what": "pitch-circle", "of": "wheel.ring", "about": "wheel.bore", "between": ["-50 um", "50 um"]},
+    {"what": "symmetry", "of": "wheel.teeth", "about": "wheel.bore", "at_most": "0.2 mm"},
+    {"what": "flank-run-off", "of": "wheel.teeth", "about": "spindle.bearings", "at_most": "50 um"},
+    {"what": "depth-run-off", "of": "wheel.teeth", "about": "wheel.hub", "at_most": "50 um"},
     {"what": "allowance", "of": "wheel.back@40", "at_least": "0.1 mm"},
     {"what": "allowance", "of": "wheel.bore@40", "at_least": "0.1 mm"},
 ]
@@ -211,7 +214,8 @@ def jobs(draw: st.DrawFn) -> Node:
             "looks_at_tool": "-z",
             "hold": draw(hold("hub", 23.0, ("rim", 6.0), "seat", "seat")),
             "divide": draw(divide()),
-            "cut": {"teeth": {"error": draw(length_error())}},
+            "travel": {"beside": draw(length_error()), "nearer": draw(length_error()), "over": 100},
+            "cut": {"teeth": {"error": draw(length_error()), "off_centre": draw(length_error())}},
         },
         {
             "op": 40,
@@ -313,6 +317,8 @@ def in_inches(job: Node) -> Node:
         "leave",
         "leave_on_diameter",
         "on_diameter",
+        "width",
+        "over",
     }
 
     def inch(value: str) -> str:

@@ -173,6 +173,9 @@ def test_every_kind_of_figure_is_asked_of_the_drawn_jobs() -> None:
         "position",
         "chord",
         "pitch-circle",
+        "symmetry",
+        "flank-run-off",
+        "depth-run-off",
         "allowance",
     } == {str(r["what"]) for r in REQUIRE}
 

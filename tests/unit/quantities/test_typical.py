@@ -19,8 +19,15 @@ OVEN = ("by: oven, oven_error: 10 degC", "by: hot-plate")
 TILT = ("uncertainty: 2', leans", "by: readout, leans")
 
 
-def row(what: str = "runout", value: str = "80 um", kind: str = "from memory", more: str = "") -> str:
-    return f"format: 2\nvalues:\n  {what}:\n    three-jaw: {{value: '{value}', kind: {kind}, note: worn{more}}}\n"
+def row(
+    what: str = "runout",
+    value: str = "80 um",
+    kind: str = "from memory",
+    more: str = "",
+    ends: str = "[10 um, 150 um]",
+) -> str:
+    told = f"value: '{value}', range: {ends}, kind: {kind}, note: worn{more}"
+    return f"format: 3\nvalues:\n  {what}:\n    three-jaw: {{{told}}}\n"
 
 
 def rests(found: Review, rule: str, op: int | None = None) -> set[str]:
@@ -40,6 +47,7 @@ def test_every_row_says_how_good_it_is_and_what_it_holds_for() -> None:
     assert len(table()) >= 45
     for one in table().values():
         assert one.kind in EVIDENCE and one.note and one.value > 0.0, one.name
+        assert 0.0 < one.best <= one.value <= one.worst and one.best < one.worst, one.name
     assert {what for _, what in table()} == set(WHATS)
 
 
@@ -59,8 +67,18 @@ def test_a_row_is_read_in_the_unit_of_what_it_is_of() -> None:
         ),
         (row(value="80"), "t.yaml:4  values.runout.three-jaw.value is no value"),
         (row(what="tilt", value="80 um"), "t.yaml:4  values.tilt.three-jaw.value is no value"),
-        (row(more=", by: me"), "t.yaml:4  values.runout.three-jaw needs value, kind, note, each a text, and nothing"),
-        ("format: 1\nvalues: {}\n", "t.yaml: 'format: 2' and a map 'values' are needed"),
+        (row(ends="[90 um, 150 um]"), "t.yaml:4  values.runout.three-jaw.range does not hold the value 80 um"),
+        (row(ends="[150 um, 10 um]"), "t.yaml:4  values.runout.three-jaw.range has to run from a best above zero"),
+        (row(ends="[0 um, 150 um]"), "t.yaml:4  values.runout.three-jaw.range has to run from a best above zero"),
+        (row(ends="[10, 150 um]"), "t.yaml:4  values.runout.three-jaw.range is no"),
+        (row(ends="[10 K, 150 um]"), "t.yaml:4  values.runout.three-jaw.range is no value"),
+        (row(ends="[10 um]"), "t.yaml:4  values.runout.three-jaw.range is no pair"),
+        (row(ends="10 um to 150 um"), "t.yaml:4  values.runout.three-jaw.range is no pair"),
+        (
+            row(more=", by: me"),
+            "t.yaml:4  values.runout.three-jaw needs value, kind, note, each a text, and range, and",
+        ),
+        ("format: 2\nvalues: {}\n", "t.yaml: 'format: 3' and a map 'values' are needed"),
     ],
 )
 def test_a_wrong_row_is_told_with_its_line(text: str, said: str) -> None:

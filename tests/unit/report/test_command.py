@@ -92,6 +92,7 @@ def test_json_has_format_1_and_the_keys_that_were_promised(job: Path) -> None:
         "counts",
         "quantities",
         "stacks",
+        "measure_first",
         "gates",
         "lengths",
         "joints",

@@ -76,6 +76,31 @@ def test_ten_times_the_plan_is_still_worth_a_number() -> None:
     assert "op 20, run-out on hub: up to 30 um (3 um planned)" in lines(replace(GATE, op=20, reading=0.030))
 
 
+CAREFUL = replace(GATE, planned=0.010, reading=0.0401, careful=True)
+
+
+def test_a_reading_trued_with_care_that_may_be_four_times_its_plan_is_good_enough_already() -> None:
+    said = "good enough already, do not indicate finer: op 40, run-out on hub (10 um planned, 40 um would do)"
+    assert said == lines(CAREFUL)
+    assert lines(replace(CAREFUL, reading=0.0400)).startswith("op 40, run-out on hub: up to 40 um (10 um planned)")
+    assert lines(replace(CAREFUL, careful=False)).startswith("op 40, run-out on hub: up to 40 um (10 um planned)")
+    assert "(10 um measured, 40 um would do)" in lines(replace(CAREFUL, measured=True))
+
+
+def test_a_chuck_that_needs_no_truing_is_named_from_its_typical_run_out_on() -> None:
+    assert "81 um would do: a three-jaw chuck as it comes)" in lines(replace(CAREFUL, reading=0.081))
+    assert "79 um would do)" in lines(replace(CAREFUL, reading=0.079))
+    assert "81 um would do)" in lines(replace(CAREFUL, reading=0.081, step="square"))
+
+
+def test_good_enough_goes_before_not_critical_and_never_takes_away_a_least_reading() -> None:
+    assert lines(replace(CAREFUL, reading=0.3)).endswith(
+        "(10 um planned, 300 um would do: a three-jaw chuck as it comes)"
+    )
+    assert lines(replace(CAREFUL, reading=None)) == "not critical: op 40, run-out on hub"
+    assert "at least 1.0 um" in lines(replace(CAREFUL, least=0.001))
+
+
 def test_a_far_reading_with_a_least_one_keeps_its_line() -> None:
     assert "op 40, run-out on hub: at least 2.0 um, high at mark" in lines(
         replace(GATE, reading=None, least=0.002, high_at="mark")

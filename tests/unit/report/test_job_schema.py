@@ -14,7 +14,7 @@ import jsonschema
 import pytest
 from pydantic import BaseModel, ConfigDict, TypeAdapter, ValidationError
 
-from setupcheck.jobfile import dividing, setups, spelling, types
+from setupcheck.jobfile import dividing, spelling, touched, types
 from setupcheck.jobfile.keys import about, descriptions, keys_of
 from setupcheck.jobfile.setups import Job
 from setupcheck.jobfile.types import Read, Shop
@@ -193,8 +193,8 @@ def test_the_reader_takes_what_a_spelling_takes(kind: Any, schema: dict[str, Any
 
 @pytest.mark.parametrize("record", RECORDS, ids=lambda r: r.__name__)
 def test_a_single_value_stands_for_a_record_just_where_the_reader_takes_it(record: type[BaseModel]) -> None:
-    if record is setups.Touched:
-        kind: Any = setups.DepthFrom
+    if record is touched.Touched:
+        kind: Any = touched.DepthFrom
     else:
         kind = record
     values = ["10 um", "name", 12.5, "32 H6"]

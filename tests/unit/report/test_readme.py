@@ -11,7 +11,7 @@ from typing import Literal, get_args, get_origin
 import pytest
 from pydantic import BaseModel
 
-from setupcheck.jobfile import grinding, insert_profile, marks, models, properties, setups, worm
+from setupcheck.jobfile import grinding, insert_profile, marks, models, properties, setups, touched, worm
 
 README = (Path(__file__).resolve().parents[3] / "README.md").read_text(encoding="utf-8")
 TABLE = README.partition("### Words the job file knows")[2].partition("\n## ")[0]
@@ -30,7 +30,7 @@ def records() -> dict[str, type[BaseModel]]:
     """All records of the job file by name."""
     found = {
         name: r
-        for module in (grinding, insert_profile, models, properties, setups, worm, marks)
+        for module in (grinding, insert_profile, models, properties, setups, touched, worm, marks)
         for name, r in vars(module).items()
         if inspect.isclass(r)
     }

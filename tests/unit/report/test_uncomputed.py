@@ -19,7 +19,10 @@ from setupcheck.jobfile import (
     properties,
     prove_out,
     setups,
+    touched,
+    travel,
     truing,
+    turning,
     worm,
 )
 from setupcheck.report.json import as_json
@@ -29,11 +32,12 @@ from tests.unit.report.sample import GEAR, PLATE, WHEEL, changed, line_of, loade
 
 READ = {
     "Dimension": "nominal lower upper fit measured uncertainty at_temperature",
-    "Deviation": "at_most measured uncertainty standard_uncertainty high_at device mark indicator",
-    "Round": "kind diameter low high hole made",
+    "Deviation": "at_most measured uncertainty standard_uncertainty high_at device mark indicator known_at",
+    "Round": "kind diameter low high hole made to_diameter",
     "Flat": "kind at facing diameter hole made",
     "Throat": "kind diameter at made",
-    "Toothing": "kind count on_circle at width pressure_angle module made",
+    "Toothing": "kind count on_circle at width pressure_angle module cone made",
+    "Travel": "beside nearer over",
     "Pattern": "kind count on_circle at diameter width angle made",
     "Relation": "of about from_ runout face_runout across length division",
     "Part": "material surfaces given",
@@ -58,7 +62,7 @@ READ = {
     "Checked": "caution op by note",
     "Through": "by runout",
     "Span": "low high",
-    "Centre": "on by at runout clearance rests x y grip grip_force through turned",
+    "Centre": "on by at runout clearance rests x y grip grip_force through turned jaws_stand_out",
     "Square": "on by face_runout across chip",
     "Spacer": "name length",
     "MeasuredPair": "name bore journal uncertainty",
@@ -80,7 +84,8 @@ READ = {
     "Near": "what stands away",
     "Trued": "on about runout",
     "Join": "outer inner by square fit_error trued clearance rests stop mounted_at",
-    "Setup": "op note machine part looks_at_tool keeps hold head divide cut join",
+    "Setup": "op note machine part looks_at_tool keeps hold head divide cut join turning",
+    "Turning": "speed chuck_speed off_centre off_by bar_behind",
     "Job": "setupcheck title job revision units room confidence parts worm mesh cutters machines setups place require "
     "waive checked done",
 }
@@ -98,10 +103,13 @@ RECORDS = {
         properties,
         prove_out,
         setups,
+        touched,
         truing,
+        turning,
         heating,
         worm,
         marks,
+        travel,
     )
     for record in vars(module).values()
     if inspect.isclass(record)
@@ -158,7 +166,10 @@ def test_a_tilt_that_is_compared_with_the_worm_is_not_told_and_any_other_is() ->
     assert not any(line.startswith("op 40") for line in told(WHEEL))
     hobbed = changed(WHEEL, ("fly: {kind: single-point", "fly: {kind: hob"))
     said = " ".join(told(hobbed))
-    assert "tilt 3deg 34' 35\" (compared with the worm only where its wheel is cut gap by gap)" in said
+    assert (
+        "tilt 3deg 34' 35\" (compared with a worm whose wheel is cut gap by gap, or with the root cone of bevel teeth)"
+        in said
+    )
     assert "depth 3.3 mm of teeth (held against the passes only)" in said
 
 

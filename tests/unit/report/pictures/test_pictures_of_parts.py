@@ -11,8 +11,11 @@ from xml.etree import ElementTree
 
 import pytest
 
+from setupcheck.errors import JobError
 from setupcheck.flow import Review, review
 from setupcheck.report.pictures import WIDEST, pictures
+from setupcheck.report.pictures.pieces import Way, finished
+from setupcheck.report.pictures.shape import radius_at, solid
 from setupcheck.report.svg import room
 from tests.unit.report.sample import GEAR, WHEEL, changed, reviewed
 
@@ -410,3 +413,22 @@ def test_a_surface_cut_here_is_thicker_than_every_other_line() -> None:
         for colour in ("#2b7a2b", "black")
     }
     assert min(widths["#2b7a2b"]) > 2.0 * max(widths["black"])
+
+
+def test_a_taper_is_drawn_from_one_diameter_to_the_other_also_turned_round() -> None:
+    found = job("bevel-pinion-blank.yaml")
+    pieces = finished(found, "pinion")
+    cone = next(p for p in pieces if p.name == "face-cone")
+    body = solid(pieces)
+    assert [radius_at(body.outer, z) for z in (12.0, 20.0)] == pytest.approx([cone.radius_at(z) for z in (12.0, 20.0)])
+    assert cone.ends == pytest.approx((21.789, 15.455))
+    turned = Way(-1, 24.0).of(cone)
+    assert turned.ends == pytest.approx((15.455, 21.789))
+    assert turned.radius_at(24.0 - 12.0) == pytest.approx(cone.radius_at(12.0))
+    assert "Ø43.578 to 30.91" in drawn("bevel-pinion-blank.yaml", "part-pinion")
+
+
+def test_only_a_taper_takes_two_diameters() -> None:
+    text = (ROOT / "jobs" / "bevel-pinion-blank.yaml").read_text(encoding="utf-8")
+    with pytest.raises(JobError, match="a cylinder has one diameter"):
+        reviewed(changed(text, ("kind: taper", "kind: cylinder")))

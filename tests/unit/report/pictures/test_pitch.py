@@ -23,6 +23,9 @@ DIVIDED = {
     "index-plate": ["pitch-4"],
     "rotator-worm-wheel": ["pitch-1"],
     "spur-gear-on-mandrel": ["pitch-1"],
+    "splined-shaft": ["pitch-5"],
+    "bevel-pinion-blank": ["pitch-8"],
+    "sprocket": ["pitch-4"],
     "wheel-on-spindle": ["pitch-1"],
 }
 BY_PLATE = '{by: hole-circle, circle: 18, wheel: {once_per_turn: ±10"}, setting: 2"}'
