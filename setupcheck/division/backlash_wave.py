@@ -43,7 +43,8 @@ class Wave:
     @property
     def loosest(self) -> float:
         """Where the wave is highest, counted from gap 1 [rad]."""
-        return math.atan2(self.y, self.x) % math.tau
+        angle = math.atan2(self.y, self.x) % math.tau
+        return angle if math.tau - angle > 1e-9 else 0.0  # noise below zero is gap 1, not a whole turn
 
     def spread_at(self, angle: float) -> float:
         """Uncertainty of the wave at one place over that of a reading: sqrt(v N^-1 v), v = (1, cos, sin).

@@ -7,6 +7,7 @@ from collections.abc import Callable, Sequence
 from dataclasses import fields, replace
 from functools import partial
 
+from setupcheck.errors import JobError
 from setupcheck.jobfile.models import Deviation
 from setupcheck.ledger.account import Account
 from setupcheck.ledger.causes import TRUNCATION, TRUNCATION_2D, Cause
@@ -291,7 +292,12 @@ def _as_they_run(floor: Floor, entry: DialEntry, behind: Sequence[Behind], limit
 
 
 def _excess_again(figure_with: Callable[..., Figure], floor: Floor, stack: Stack, path: str, reading: float) -> float:
-    return worst_excess(figure_with(floor.loaded, stack, (path,), measured=reading), stack.low, stack.high)
+    """The same with that reading typed in and walked again; without end where nothing can be told of it any more."""
+    try:
+        figure = figure_with(floor.loaded, stack, (path,), measured=reading)
+    except (ValueError, JobError):
+        return math.inf
+    return worst_excess(figure, stack.low, stack.high)
 
 
 def origins(places: Sequence[Reach]) -> list[Cause]:

@@ -61,13 +61,13 @@ class Boxes:
         """An error entry: dial reading with its high spot, or a length with its sign."""
         unit = f"± {self.fine}" if signed else self.fine
         around = () if signed else (Cell(".high_at", "high at"),)
-        cells = (Cell(".measured", unit), *around, Cell(".uncertainty", f"known to ± {self.fine}"))
+        cells = (Cell(".measured", unit), *around, Cell(".uncertainty", f"± {self.fine}"))
         return self._row(key, says, self.show.planned(given), cells)
 
     def size(self, key: str, says: str, given: Dimension) -> Row:
         """A size; a diameter with the temperature it was measured at, as it alone is brought back to 20 degC."""
         warm = (Cell(".at_temperature", "degC"),) if key.endswith(".diameter") else ()
-        cells = (Cell(".measured", self.long), *warm, Cell(".uncertainty", f"known to ± {self.fine}"))
+        cells = (Cell(".measured", self.long), *warm, Cell(".uncertainty", f"± {self.fine}"))
         return self._row(key, says, self.show.size(given), cells)
 
     def plain(self, key: str, says: str, plan: str, unit: str) -> Row:
@@ -171,7 +171,7 @@ class Boxes:
         if cut.depth_from is not None:
             touched = cut.depth_from
             key = f"{path}.depth_from"
-            cells = (Cell(".measured", self.long), Cell(".uncertainty", f"known to ± {self.fine}"))
+            cells = (Cell(".measured", self.long), Cell(".uncertainty", f"± {self.fine}"))
             plan = f"within {self.show.fine(touched.at_most)}" if touched.at_most is not None else ""
             yield self._row(key, f"diameter of {touched.surface}, from which the depth is counted", plan, cells)
         if cut.depth_error is not None:
