@@ -13,7 +13,7 @@ from setupcheck.quantities.typical import typical, typical_length
 
 HELD_AT_ONE_END = ("three-jaw", "four-jaw", "soft-jaws", "shimmed-jaws", "collet", "pot-chuck")
 """Devices that carry a part by one end. Source: common practice."""
-LAID_ON = ("jaws", "parallels", "table", "collar", "flange", "faceplate", "magnetic-chuck")
+LAID_ON = ("jaws", "shoulder", "parallels", "table", "collar", "flange", "faceplate", "magnetic-chuck")
 """What a part is laid against with a face, so that the face looks away from the tool. Source: common practice."""
 
 

@@ -42,9 +42,12 @@ def without(loaded: LoadedJob, keys: Iterable[str]) -> LoadedJob:
     for key in keys:
         *way, last = loaded.loc(key)
         node: object = data
-        for step in way:
-            node = node[step]  # type: ignore[index]
-        del node[last]  # type: ignore[attr-defined]
+        try:
+            for step in way:
+                node = node[step]  # type: ignore[index]
+            del node[last]  # type: ignore[attr-defined]
+        except (KeyError, IndexError, TypeError):
+            raise AssertionError(f"{loaded.file} has no {key} to take out; change the overlay with the job") from None
     return read_job_text(json.dumps(data, ensure_ascii=False), loaded.file)
 
 
