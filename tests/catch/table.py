@@ -80,10 +80,14 @@ def overlays() -> tuple[Overlay, ...]:
     return tuple(found)
 
 
-def changes_where(pattern: str, key: str) -> bool:
-    """Does a change of an entry, or of one around or inside it, fall under the path pattern of a slip?"""
+def changes_where(patterns: str, key: str) -> bool:
+    """Does a change of an entry, or of one around or inside it, fall under a path pattern of a slip?"""
+    return any(_under(pattern, key) for pattern in patterns.split(" or "))
+
+
+def _under(pattern: str, key: str) -> bool:
     mine, wanted = key.replace("[", ".").split("."), pattern.split(".")
-    return all(fnmatchcase(a, b) for a, b in zip(mine, wanted, strict=False))
+    return fnmatchcase(key, pattern) or all(fnmatchcase(a, b) for a, b in zip(mine, wanted, strict=False))
 
 
 def _slip(row: Mapping[str, Data]) -> Slip:
