@@ -84,9 +84,7 @@ def judge(overlay: Overlay) -> Caught:
     if not spoke:
         return Caught(overlay, MISSED, ())
     level = LEVELS.index(slips()[overlay.slip].level)
-    right = any(
-        (rule, at) == (overlay.rule, overlay.at) and verdict in LEVELS[level:] for rule, at, verdict in spoke
-    )
+    right = any((rule, at) == (overlay.rule, overlay.at) and verdict in LEVELS[level:] for rule, at, verdict in spoke)
     return Caught(overlay, RIGHT if right else OTHER, spoke)
 
 
