@@ -86,10 +86,8 @@ def changes_where(patterns: str, key: str) -> bool:
 
 
 def _under(pattern: str, key: str) -> bool:
-    if fnmatchcase(key, pattern) or fnmatchcase(key, f"{pattern}[.[]*"):
-        return True
     mine, wanted = key.replace("[", ".").split("."), pattern.split(".")
-    return len(mine) <= len(wanted) and all(fnmatchcase(a, b) for a, b in zip(mine, wanted, strict=False))
+    return fnmatchcase(key, pattern) or all(fnmatchcase(a, b) for a, b in zip(mine, wanted, strict=False))
 
 
 def _slip(row: Mapping[str, Data]) -> Slip:
