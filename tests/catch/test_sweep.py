@@ -16,6 +16,7 @@ EACH = 24
 
 MORE_DEFAULTS = {  # outside the sections that test_missing_numbers.py goes through
     "room": "20 degC, the temperature of ISO 1",
+    "confidence": "95 %, as is common in tables of uncertainties",
     "require[*].across": "a face is judged across its own diameter",
     "setups.*.join.growth_at[*]": "one place fewer to tell the growth at: less is asked, not less is known",
 }
