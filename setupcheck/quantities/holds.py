@@ -2,7 +2,8 @@
 
 from __future__ import annotations
 
-from setupcheck.jobfile.setups import Centre, Setup
+from setupcheck.jobfile.models import Flat
+from setupcheck.jobfile.setups import Centre, Setup, Square
 from setupcheck.quantities.book import Known, Open
 from setupcheck.quantities.judged import Result
 from setupcheck.quantities.route import machine_of
@@ -12,12 +13,32 @@ from setupcheck.quantities.typical import typical, typical_length
 
 HELD_AT_ONE_END = ("three-jaw", "four-jaw", "soft-jaws", "shimmed-jaws", "collet", "pot-chuck")
 """Devices that carry a part by one end. Source: common practice."""
+LAID_ON = ("jaws", "shoulder", "parallels", "table", "collar", "flange", "faceplate", "magnetic-chuck")
+"""What a part is laid against with a face, so that the face looks away from the tool. Source: common practice."""
 
 
 def datum_state(floor: Floor, key: str) -> str | None:
     """stock, made, rough, not-yet-made, cut-away or same-holding. Source: the order of the route."""
     found = floor.datums.get(key)
     return found.state if found is not None else None
+
+
+def laid_on(floor: Floor, key: str, entry: HoldEntry) -> str | None:
+    """`away` or `the tool`: where the face looks with which a part is laid on something; None where it is only read.
+
+    Source: geometry on the drawing.
+    """
+    square, op = entry.entry, int(key.partition("/")[0])
+    looks = next(s for s in floor.loaded.job.setups if s.op == op).looks_at_tool
+    if not isinstance(square, Square) or square.by not in LAID_ON or looks is None:
+        return None
+    held = floor.part_of[op]
+    ref = floor.loaded.ref(square.on, held if square.on in floor.loaded.surfaces()[held] else None)
+    face = floor.loaded.job.parts[ref.part].surfaces[ref.surface]
+    if not isinstance(face, Flat):
+        return None
+    tool = looks * floor.sense(held)
+    return "the tool" if face.facing * floor.sense(ref.part) == tool else "away"
 
 
 def tilt_datums(floor: Floor, setup: Setup) -> float | None:

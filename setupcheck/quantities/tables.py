@@ -168,6 +168,15 @@ HOLD = (
         "how the datum is found when the hold takes it",
     ),
     Quantity(
+        "datum.laid_on",
+        "hold",
+        "",
+        0,
+        holds.laid_on,
+        {"floor": "route.floor", "key": "@key", "entry": ":"},
+        "where the face looks with which the part is laid on something",
+    ),
+    Quantity(
         "hold.tilt_datums",
         "setup",
         "1",

@@ -44,7 +44,7 @@ def listed(caught: list[Caught]) -> list[str]:
             spoke = "; ".join(f"{r} {v} at {at}" if at else f"{r}: {v}" for r, at, v in one.spoke) or "nothing"
             lines.append(f"{one.how}: {one.overlay.told()}\n    wanted {one.overlay.rule}; spoke: {spoke}")
         elif one.how == WAITS:
-            lines.append(f"waits: {one.overlay.told()}\n    for {one.overlay.waits}")
+            lines.append(f"waits: {one.overlay.told()}\n    for {one.overlay.rule}")
     return lines
 
 

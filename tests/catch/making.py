@@ -9,11 +9,11 @@ from dataclasses import dataclass
 from functools import cache
 
 from setupcheck.errors import JobError
-from setupcheck.flow import Review, load_job, review
+from setupcheck.flow import Review, load_job, review, rules
 from setupcheck.jobfile.changing import changed
 from setupcheck.jobfile.reading import LoadedJob, read_job_text
 from setupcheck.shipped import shipped
-from tests.catch.table import LEVELS, Overlay, slips
+from tests.catch.table import LEVELS, READER, Overlay, slips
 
 RIGHT, OTHER, MISSED, WAITS = "caught by the right rule", "caught by another", "missed", "waiting for their rule"
 
@@ -42,9 +42,12 @@ def without(loaded: LoadedJob, keys: Iterable[str]) -> LoadedJob:
     for key in keys:
         *way, last = loaded.loc(key)
         node: object = data
-        for step in way:
-            node = node[step]  # type: ignore[index]
-        del node[last]  # type: ignore[attr-defined]
+        try:
+            for step in way:
+                node = node[step]  # type: ignore[index]
+            del node[last]  # type: ignore[attr-defined]
+        except (KeyError, IndexError, TypeError):
+            raise AssertionError(f"{loaded.file} has no {key} to take out; change the overlay with the job") from None
     return read_job_text(json.dumps(data, ensure_ascii=False), loaded.file)
 
 
@@ -63,9 +66,14 @@ def spoken(found: Review) -> tuple[tuple[str, str, str], ...]:
     return tuple((f.rule, f.at, f.verdict) for f in found.evaluation.findings if f.verdict != "pass")
 
 
+def waits(overlay: Overlay) -> bool:
+    """Is the rule of an overlay still to come?"""
+    return overlay.rule != READER and overlay.rule not in {rule.id for rule in rules().rules}
+
+
 def judge(overlay: Overlay) -> Caught:
-    """One overlay made and reviewed. One that waits for its rule is made all the same once its entries can be read."""
-    if overlay.waits:
+    """One overlay made and reviewed, unless the book does not have its rule yet."""
+    if waits(overlay):
         return Caught(overlay, WAITS, ())
     try:
         spoke = spoken(review(made(overlay)))
@@ -76,9 +84,7 @@ def judge(overlay: Overlay) -> Caught:
     if not spoke:
         return Caught(overlay, MISSED, ())
     level = LEVELS.index(slips()[overlay.slip].level)
-    right = any(
-        (rule, at) == (overlay.rule, overlay.at) and verdict in LEVELS[level:] for rule, at, verdict in spoke
-    )
+    right = any((rule, at) == (overlay.rule, overlay.at) and verdict in LEVELS[level:] for rule, at, verdict in spoke)
     return Caught(overlay, RIGHT if right else OTHER, spoke)
 
 

@@ -36,7 +36,11 @@ class Spoilt:
 def every(jobs: Iterable[str]) -> list[tuple[Number, str]]:
     """All numbers of these jobs, each in every way that changes it."""
     return [
-        (number, way) for job in jobs for number in numbers(job, good(job)) for way in WAYS if spoilt(number, way) is not None
+        (number, way)
+        for job in jobs
+        for number in numbers(job, good(job))
+        for way in WAYS
+        if spoilt(number, way) is not None
     ]
 
 
@@ -75,8 +79,10 @@ def _seen_in_good(job: str) -> tuple[Findings, dict[tuple[str, str], float | str
 
 
 def unused(found: Sequence[Spoilt]) -> set[Number]:
-    """Numbers that nothing judged rests on: neither doubled nor halved nor negated do they move anything."""
-    return {one.number for one in found} - {one.number for one in found if one.way != "removed" and one.how != SILENT}
+    """Numbers that nothing judged rests on: doubled, halved and negated they move nothing, or the reader refuses them,
+    who looks at the number alone."""
+    silent = {one.number for one in found if one.way != "removed" and one.how == SILENT}
+    return silent - {one.number for one in found if one.way != "removed" and one.how in (SPEAKS, MOVES)}
 
 
 def removed_in_silence(found: Sequence[Spoilt]) -> list[Spoilt]:

@@ -40,7 +40,7 @@ class Overlay:
 
     sets, takes  entries that get another value, and entries that are taken out
     rule, at     the finding that has to speak: its rule, which is `reader` where the file is refused, and its instance
-    says         words of the refusal;  waits  the rule of the table that is to come, empty where the rule is there
+    says         words of the refusal
     """
 
     slip: str
@@ -50,7 +50,6 @@ class Overlay:
     rule: str
     at: str
     says: str
-    waits: str
 
     def told(self) -> str:
         """The slip, the job and what is changed, in a line."""
@@ -81,10 +80,14 @@ def overlays() -> tuple[Overlay, ...]:
     return tuple(found)
 
 
-def changes_where(pattern: str, key: str) -> bool:
-    """Does a change of an entry, or of one around or inside it, fall under the path pattern of a slip?"""
+def changes_where(patterns: str, key: str) -> bool:
+    """Does a change of an entry, or of one around or inside it, fall under a path pattern of a slip?"""
+    return any(_under(pattern, key) for pattern in patterns.split(" or "))
+
+
+def _under(pattern: str, key: str) -> bool:
     mine, wanted = key.replace("[", ".").split("."), pattern.split(".")
-    return all(fnmatchcase(a, b) for a, b in zip(mine, wanted, strict=False))
+    return fnmatchcase(key, pattern) or all(fnmatchcase(a, b) for a, b in zip(mine, wanted, strict=False))
 
 
 def _slip(row: Mapping[str, Data]) -> Slip:
@@ -94,7 +97,7 @@ def _slip(row: Mapping[str, Data]) -> Slip:
 
 
 def _overlay(row: Mapping[str, Data], of: str) -> Overlay:
-    unknown = row.keys() - {"slip", "change", "expect", "waits"}
+    unknown = row.keys() - {"slip", "change", "expect"}
     assert not unknown, (of, unknown)
     change, expect = row["change"], row["expect"]
     assert isinstance(change, dict) and isinstance(expect, dict)
@@ -102,7 +105,7 @@ def _overlay(row: Mapping[str, Data], of: str) -> Overlay:
     takes = tuple(key for key, value in change.items() if value == "taken out")
     says = str(expect.get("refused", ""))
     rule = READER if says else str(expect.get("rule", ""))
-    return Overlay(str(row["slip"]), of, sets, takes, rule, str(expect.get("at", "")), says, str(row.get("waits", "")))
+    return Overlay(str(row["slip"]), of, sets, takes, rule, str(expect.get("at", "")), says)
 
 
 def _value(value: Data) -> str:

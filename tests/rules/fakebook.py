@@ -99,6 +99,7 @@ QUANTITIES: Mapping[str, FakeQuantity] = {
         FakeQuantity("stack.confidence", "stack", "%", 1),
         FakeQuantity("stack.second_order", "stack", "%", 2),
         FakeQuantity("datum.state", "hold", "", 0),
+        FakeQuantity("datum.laid_on", "hold", "", 0),
         FakeQuantity("hold.tilt_datums", "setup", "1", 0),
         FakeQuantity("hold.error_stated", "hold", "", 0),
         FakeQuantity("hold.error_kind", "hold", "", 0),
