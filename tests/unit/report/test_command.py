@@ -134,6 +134,7 @@ def test_json_has_format_1_and_the_keys_that_were_promised(job: Path) -> None:
         "value",
         "limit",
         "margin",
+        "house",
         "unit",
         "missing",
         "message",
