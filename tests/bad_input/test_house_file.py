@@ -45,7 +45,7 @@ MISTAKES = {
     "no list": ("waive:\n  - ", "waive:\n  ", 20, "'waive' is no list"),
     "key twice": ("levels:", "limits:", 4, "limits"),
     # limits
-    "unknown rule": ("HOLD-006", "HOLD-06", 3, "there is no rule 'HOLD-06'. Did you mean HOLD-006?"),
+    "unknown rule": ("HOLD-006", "HOLD-06", 3, "there is no rule 'HOLD-06'. Did you mean HOLD-016?"),
     "outside": ("40 %", "51 %", 3, "HOLD-006 may be set from 20 % to 50 %, not to 51 %"),
     "unit": ("40 %", "40 um", 3, "'40 um' is no share. Write the limit in %"),
     "no number": ("40 %", "lots", 3, "'lots'"),
