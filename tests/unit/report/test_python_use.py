@@ -80,7 +80,7 @@ def test_changes_that_cannot_be_are_told_with_what_would_be_right(changes: dict[
 
 
 def test_an_unknown_example_lists_those_there_are() -> None:
-    with pytest.raises(SetupcheckError, match=r"no shipped job 'worm'\. There: bearing-ring-seat, bevel-pinion-blank, coupling-hub"):
+    with pytest.raises(SetupcheckError, match=r"no shipped job 'worm'\. There: bearing-ring-seat, bevel-pinion-blank"):
         example("worm")
     with pytest.raises(SetupcheckError):
         example("../pyproject")
