@@ -297,7 +297,8 @@ def read_house(house: House | str | Path, *, on: str | None = None) -> House:
 
     quantities, words = judgeable()
     shipped_values = {key: row.value for key, row in table().items()}
-    devices = Devices(WHATS, shipped_values, read_record)
+    usual = {key: (row.best, row.worst) for key, row in table().items()}
+    devices = Devices(WHATS, shipped_values, read_record, usual)
     return load_house(Path(house), rules(), quantities=quantities, words=words, devices=devices, on=on)
 
 

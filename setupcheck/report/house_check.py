@@ -6,7 +6,8 @@ from collections.abc import Iterator
 
 from setupcheck.notation import FACTOR, show
 from setupcheck.quantities.device_record import DeviceRecord
-from setupcheck.report.house import house_line, unit_of_value
+from setupcheck.quantities.typical import SHOWN
+from setupcheck.report.house import house_line
 from setupcheck.report.wording import wrap
 from setupcheck.rulebook.describe import requirement_text
 from setupcheck.rulebook.house import House
@@ -64,7 +65,7 @@ def _rules(house: House) -> Iterator[str]:
 
 def _values(house: House) -> Iterator[str]:
     for row in house.values:
-        unit = unit_of_value(row.what)
+        unit = SHOWN[row.what]
         was = show(row.shipped, unit, 0 if row.shipped * FACTOR[unit] >= 1.0 else 2)
         yield from _item(f"{row.name}: {was} -> {row.text}; {row.who}, {row.when}: {row.note}")
 

@@ -28,7 +28,7 @@ T = TypeVar("T", HouseLimit, HouseLevel, HouseWaiver)
 LONGEST_NAME = 60
 """Characters of a house's name, which stands in every finding it acts on. Source: our choice."""
 FAR_OFF = 10.0
-"""A house value this many times the shipped one, or as many times below, is told. Source: our screening choice."""
+"""A house value this many times the worst that is usual, or as far below the best, is told. Source: our screening choice."""
 KEYS = ("house", "limits", "levels", "rules", "typical", "record", "waive")
 
 
@@ -36,12 +36,14 @@ KEYS = ("house", "limits", "levels", "rules", "typical", "record", "waive")
 class Devices:
     """What is known of devices outside the rule book: readers of values by what they are of, and the shipped values.
 
+    usual        best and worst that is usual, beside the shipped value
     read_record  reads a shop's record of its devices; its JobError becomes errors of the house file
     """
 
     readers: Mapping[str, Callable[[str], float]] = field(default_factory=dict)
     shipped: Mapping[tuple[str, str], float] = field(default_factory=dict)
     read_record: Callable[[Path], object] | None = None
+    usual: Mapping[tuple[str, str], tuple[float, float]] = field(default_factory=dict)
 
 
 def load_house(
@@ -258,13 +260,15 @@ class _Reading:
         note, who, when = self._signed(row, "note", "who", "when")
         if value is None:
             raise HouseError(())
-        text, shipped = row.text("value"), self.devices.shipped[max(mine, key=len), what]
+        text, kind = row.text("value"), max(mine, key=len)
+        shipped = self.devices.shipped[kind, what]
+        best, worst = self.devices.usual.get((kind, what), (shipped, shipped))
         found = HouseValue(device, what, value, text, shipped, note, who, when, row.place())
-        if not shipped / FAR_OFF <= value <= shipped * FAR_OFF:
-            much = "above" if value > shipped else "below"
+        if not best / FAR_OFF <= value <= worst * FAR_OFF:
+            much = "above" if value > worst else "below"
             self.notes.append(
-                f"{found.name}, line {found.place.line}: {text} lies more than {FAR_OFF:g} times {much} the shipped "
-                "typical value; see that its unit is right"
+                f"{found.name}, line {found.place.line}: {text} lies more than {FAR_OFF:g} times {much} what is "
+                "usual; see that its unit is right"
             )
         return found
 

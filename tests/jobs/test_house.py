@@ -314,7 +314,10 @@ def test_a_value_far_from_the_shipped_one_is_told_and_used(shop: Path) -> None:
     (shop / "shop.yaml").write_text(far, encoding="utf-8")
     code, told = run("rules", "--check", shop / "shop.yaml")
     assert code == 0
-    assert f"soft-jaws runout, line {line_of(far, '1.5 mm')}: 1.5 mm lies more than 10 times above" in flat(told)
+    assert (
+        f"soft-jaws runout, line {line_of(far, '1.5 mm')}: 1.5 mm lies more than 10 times above what is usual"
+        in flat(told)
+    )
     assert "Look at soft-jaws runout" in flat(as_text(judged(shop, far)))
 
 
