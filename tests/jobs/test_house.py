@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import copy
 import json
+import re
 import shutil
 from pathlib import Path
 
@@ -319,6 +320,17 @@ def test_a_value_far_from_the_shipped_one_is_told_and_used(shop: Path) -> None:
         in flat(told)
     )
     assert "Look at soft-jaws runout" in flat(as_text(judged(shop, far)))
+
+
+def test_the_example_of_the_readme_can_be_used_and_acts(shop: Path) -> None:
+    readme = (Path(__file__).resolve().parents[2] / "README.md").read_text(encoding="utf-8")
+    (example_there,) = re.findall(r"<!-- house -->\n```yaml\n(.*?)```\n", readme, re.S)
+    found = judged(shop, example_there, on="2027-02-01")
+    assert found.house is not None and found.house.notes == ()
+    assert [use.row.device for use in found.of_house] == ["soft-jaws"]
+    acted = {f.rule for f in found.evaluation.findings if f.house}
+    assert {"HOLD-006", "HOLD-004", "SHOP-001"} == acted and SAID in readme
+    assert all(word in readme for word in (HOUSE_FILE, "`--no-house`", "`record: "))
 
 
 def test_an_own_rule_is_described_like_any_other(shop: Path) -> None:
