@@ -8,13 +8,14 @@ from typing import Annotated
 
 import typer
 
+from setupcheck.cli.options import Force
 from setupcheck.cli.writing import refuse_place, write_whole
 
 
 def command(
     job: Annotated[Path, typer.Argument(metavar="JOB", help="Job file (YAML).", show_default=False)],
     svg: Annotated[Path | None, typer.Option(help="Write the map to this file.", show_default=False)] = None,
-    force: Annotated[bool, typer.Option("--force", help="Replace a file that is already there.")] = False,
+    force: Force = False,
 ) -> None:
     """Tell the contact of a worm wheel with its worm from the exact gap, and draw both flanks as a map.
 

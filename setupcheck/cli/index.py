@@ -8,6 +8,7 @@ from typing import Annotated
 
 import typer
 
+from setupcheck.cli.options import Force
 from setupcheck.cli.writing import refuse_place, write_whole
 
 
@@ -15,7 +16,7 @@ def command(
     job: Annotated[Path, typer.Argument(metavar="JOB", help="Job file (YAML).", show_default=False)],
     op: Annotated[int | None, typer.Option("--op", help="Only this operation.", show_default=False)] = None,
     csv: Annotated[Path | None, typer.Option("--csv", help="Write the table to this file.", show_default=False)] = None,
-    force: Annotated[bool, typer.Option("--force", help="Replace a file that is already there.")] = False,
+    force: Force = False,
 ) -> None:
     """Print the index table of a setup that divides a circle: every place with its setting, and the start again.
 

@@ -8,6 +8,7 @@ from typing import Annotated
 
 import typer
 
+from setupcheck.cli.options import Force
 from setupcheck.cli.writing import refuse_place, write_whole
 
 LARGEST = 1000.0
@@ -19,7 +20,7 @@ def command(
     svg: Annotated[Path | None, typer.Option(help="Write the drawing to this file.", show_default=False)] = None,
     scale: Annotated[float, typer.Option(help="Enlargement of the drawing, 20 for 20:1.")] = 20.0,
     paper: Annotated[str, typer.Option(help="A4 or A3.")] = "A4",
-    force: Annotated[bool, typer.Option("--force", help="Replace a file that is already there.")] = False,
+    force: Force = False,
 ) -> None:
     """Tell the insert of a worm wheel's cutter: sizes, readings for grinding it, and a drawing true to scale.
 

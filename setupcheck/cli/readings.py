@@ -8,6 +8,8 @@ from typing import TYPE_CHECKING, Annotated
 
 import typer
 
+from setupcheck.cli.options import AsJson
+
 if TYPE_CHECKING:
     from setupcheck.flow import ReadBack
 
@@ -33,7 +35,7 @@ def command(
     diameter: Annotated[
         str | None, typer.Option(help="Diameter of a workpiece to tell the range on, as in 200 or 8 in.")
     ] = None,
-    as_json: Annotated[bool, typer.Option("--json", help="Print JSON instead of text.")] = False,
+    as_json: AsJson = False,
     template: Annotated[bool, typer.Option("--template", help="Print a CSV to start from and stop.")] = False,
 ) -> None:
     """Reduce the readings of a division test, and set them against the plan: eccentricity, worm, backlash, scatter, owner.

@@ -9,7 +9,8 @@ from typing import Annotated
 import typer
 
 from setupcheck.cli.house import HouseFile, NoHouse, house_of
-from setupcheck.cli.review import EXIT, day_of
+from setupcheck.cli.options import AsJson, Day, Record, day_of
+from setupcheck.cli.review import EXIT
 
 
 def command(
@@ -17,13 +18,11 @@ def command(
     of: Annotated[
         str | None, typer.Option(metavar="require[N]", help="One requirement alone.", show_default=False)
     ] = None,
-    as_json: Annotated[bool, typer.Option("--json", help="Print JSON instead of text.")] = False,
+    as_json: AsJson = False,
     house: HouseFile = None,
     no_house: NoHouse = False,
-    record: Annotated[
-        Path | None, typer.Option(help="CSV of what your shop's own devices gave.", show_default=False)
-    ] = None,
-    on: Annotated[str | None, typer.Option(help="Day of the review (2027-03-31).", show_default=False)] = None,
+    record: Record = None,
+    on: Day = None,
 ) -> None:
     """What each entry would have to become, which other datum or order does it, where to measure next. Exit as review.
 
@@ -33,7 +32,7 @@ def command(
     """
     from setupcheck.flow import mend
 
-    day = day_of(on) if on is not None else None
+    day = day_of(on)
     found, mended = mend(job, of=of, house=house_of(job, house, leave=no_house), on=day, devices=record)
     if as_json:
         from setupcheck.report.remedy_data import as_json as report

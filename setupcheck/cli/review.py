@@ -10,24 +10,21 @@ from typing import Annotated
 import typer
 
 from setupcheck.cli.house import HouseFile, NoHouse, house_of
+from setupcheck.cli.options import AsJson, Day, Record, day_of
 
 EXIT = {"pass": 0, "warn": 1, "open": 1, "fail": 3}
 
 
 def command(
     jobs: Annotated[list[Path], typer.Argument(metavar="JOB…", help="Job files (YAML).", show_default=False)],
-    as_json: Annotated[bool, typer.Option("--json", help="Print JSON instead of text.")] = False,
+    as_json: AsJson = False,
     everything: Annotated[
         bool, typer.Option("--all", help="Passed findings, every cause and every caution as well.")
     ] = False,
     house: HouseFile = None,
     no_house: NoHouse = False,
-    record: Annotated[
-        Path | None, typer.Option(help="CSV of what your shop's own devices gave.", show_default=False)
-    ] = None,
-    on: Annotated[
-        str | None, typer.Option(help="Day of the review (2027-03-31), for waivers that end.", show_default=False)
-    ] = None,
+    record: Record = None,
+    on: Day = None,
     color: Annotated[str, typer.Option(help="auto, always or never.")] = "auto",
 ) -> None:
     """Judge every chain of errors of a job. Exit 0 pass, 1 warn or open, 2 unreadable, 3 fail.
@@ -38,8 +35,7 @@ def command(
 
     if color not in ("auto", "always", "never"):
         raise typer.BadParameter("write auto, always or never", param_hint="--color")
-    if on is not None:
-        on = day_of(on)
+    on = day_of(on)
     worst = 0
     for path in jobs:
         try:
@@ -52,15 +48,6 @@ def command(
         _show(text, colour=not as_json and _wants_colour(color))
         worst = max(worst, code)
     raise typer.Exit(worst)
-
-
-def day_of(text: str) -> str:
-    import datetime
-
-    try:
-        return datetime.date.fromisoformat(text).isoformat()
-    except ValueError:
-        raise typer.BadParameter(f"'{text}' is not a day. Write it as 2027-03-31", param_hint="--on") from None
 
 
 def _reviewed(

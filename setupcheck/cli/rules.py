@@ -8,7 +8,7 @@ from typing import Annotated
 
 import typer
 
-from setupcheck.cli.review import day_of
+from setupcheck.cli.options import day_of
 
 
 def command(
@@ -35,7 +35,7 @@ def command(
             raise typer.BadParameter("it stands alone: write setupcheck rules --check FILE", param_hint="--check")
         from setupcheck.report.house_check import as_text
 
-        day = day_of(on) if on is not None else None
+        day = day_of(on)
         sys.stdout.write(as_text(read_house(check, on=day), rules(), on=day))
         return
     if on is not None:

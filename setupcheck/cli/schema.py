@@ -8,6 +8,7 @@ from typing import Annotated
 
 import typer
 
+from setupcheck.cli.options import Force
 from setupcheck.cli.writing import refuse_place, write_whole
 
 
@@ -15,7 +16,7 @@ def command(
     output: Annotated[
         Path | None, typer.Option("-o", "--output", help="Write it to this file.", show_default=False)
     ] = None,
-    force: Annotated[bool, typer.Option("--force", help="Replace a file that is already there.")] = False,
+    force: Force = False,
 ) -> None:
     """Print the JSON Schema (draft 2020-12) of a job file: every key, what it is, the words it takes.
 

@@ -9,7 +9,7 @@ from typing import Annotated
 import typer
 
 from setupcheck.cli.house import HouseFile, NoHouse, house_of
-from setupcheck.cli.review import day_of
+from setupcheck.cli.options import Day, Force, Record, day_of
 from setupcheck.cli.writing import refuse_place, write_whole
 from setupcheck.errors import SetupcheckError, printable
 
@@ -22,16 +22,14 @@ def command(
     drawing: Annotated[
         str | None, typer.Option(help="Write this drawing alone, as in hold-30.", show_default=False)
     ] = None,
-    force: Annotated[bool, typer.Option("--force", help="Replace a file that is already there.")] = False,
+    force: Force = False,
     readings: Annotated[
         Path | None, typer.Option(help="CSV of a division test, drawn beside the prediction.", show_default=False)
     ] = None,
     house: HouseFile = None,
     no_house: NoHouse = False,
-    record: Annotated[
-        Path | None, typer.Option(help="CSV of what your shop's own devices gave.", show_default=False)
-    ] = None,
-    on: Annotated[str | None, typer.Option(help="Day of the review (2027-03-31).", show_default=False)] = None,
+    record: Record = None,
+    on: Day = None,
 ) -> None:
     """Write the setup sheet of a job: one file that prints on A4 and letter, a page for each operation.
 
@@ -41,7 +39,7 @@ def command(
 
     refuse_place(out, force=force)
     acts = house_of(job, house, leave=no_house)
-    found = review(job, house=acts, on=day_of(on) if on is not None else None, devices=record)
+    found = review(job, house=acts, on=day_of(on), devices=record)
     read = read_back(found.loaded, readings) if readings is not None else None
     if drawing is not None:
         from setupcheck.report.pictures import pictures

@@ -9,7 +9,8 @@ from typing import Annotated
 import typer
 
 from setupcheck.cli.house import HouseFile, NoHouse, house_of
-from setupcheck.cli.review import EXIT, day_of
+from setupcheck.cli.options import AsJson, Day, Force, Record, day_of
+from setupcheck.cli.review import EXIT
 from setupcheck.cli.writing import refuse_place, write_whole
 from setupcheck.errors import printable
 
@@ -25,19 +26,17 @@ def command(
             show_default=False,
         ),
     ],
-    as_json: Annotated[bool, typer.Option("--json", help="Print JSON instead of text.")] = False,
+    as_json: AsJson = False,
     svg: Annotated[
         Path | None,
         typer.Option("--svg", "-o", help="Of a range: draw the requirements into this file.", show_default=False),
     ] = None,
-    force: Annotated[bool, typer.Option("--force", help="Replace a file that is already there.")] = False,
+    force: Force = False,
     everything: Annotated[bool, typer.Option("--all", help="Every number that moved.")] = False,
     house: HouseFile = None,
     no_house: NoHouse = False,
-    record: Annotated[
-        Path | None, typer.Option(help="CSV of what your shop's own devices gave.", show_default=False)
-    ] = None,
-    on: Annotated[str | None, typer.Option(help="Day of the review (2027-03-31).", show_default=False)] = None,
+    record: Record = None,
+    on: Day = None,
 ) -> None:
     """Judge a job as it stands and with entries changed, side by side. Exit as review, for the changed job.
 
@@ -51,7 +50,7 @@ def command(
     from setupcheck.report.vary import as_json as in_json
     from setupcheck.report.vary import as_text, typed_changes
 
-    day = day_of(on) if on is not None else None
+    day = day_of(on)
     singles, spans = typed_changes(changes)
     if len(spans) > 1:
         raise typer.BadParameter("write one range at a time, and one value for the others", param_hint="--set")

@@ -9,6 +9,7 @@ from typing import Annotated
 import typer
 
 from setupcheck.cli.house import HouseFile, NoHouse, house_of
+from setupcheck.cli.options import Record
 
 
 def command(
@@ -23,9 +24,7 @@ def command(
     ],
     house: HouseFile = None,
     no_house: NoHouse = False,
-    record: Annotated[
-        Path | None, typer.Option(help="CSV of what your shop's own devices gave.", show_default=False)
-    ] = None,
+    record: Record = None,
 ) -> None:
     """Show formula, inputs with their lines, source and evidence of one number.
 

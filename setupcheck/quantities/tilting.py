@@ -134,6 +134,16 @@ def lean(floor: Floor, setup: Setup) -> str | Open | None:
     return "right" if right else "wrong"
 
 
+def direction_at_machine(word: str) -> tuple[int, int, int]:
+    """What a word of the job file points along: x to the operator's right, y away from him, z up; `nose-up` goes up.
+
+    Source: derived in worm.tilt.
+    """
+    from setupcheck.worm.tilt import VECTORS
+
+    return VECTORS[word.removeprefix("nose-")]
+
+
 def way_needed(floor: Floor, setup: Setup) -> str | None:
     """Where the nose must go for the hand of the worm, as the job file would write it; None where a place is not stated.
 

@@ -17,9 +17,9 @@ Direction = Literal["left", "right", "up", "down", "front", "back"]
 Lean = Literal["nose-up", "nose-down", "left", "right", "front", "back"]
 """Where the nose of the head goes when it is leaned: up, down, or swung aside."""
 
-_Vector = tuple[int, int, int]
+Vector = tuple[int, int, int]
 
-_VECTORS: dict[str, _Vector] = {
+VECTORS: dict[str, Vector] = {
     "right": (1, 0, 0),
     "left": (-1, 0, 0),
     "back": (0, 1, 0),
@@ -30,7 +30,7 @@ _VECTORS: dict[str, _Vector] = {
 }
 """Right-handed frame: x to the operator's right, y away from him, z up."""
 
-_LEANS: dict[_Vector, Lean] = {
+_LEANS: dict[Vector, Lean] = {
     (0, 0, 1): "nose-up",
     (0, 0, -1): "nose-down",
     (1, 0, 0): "right",
@@ -43,18 +43,18 @@ SINE_BAR_LIMIT = math.pi / 4.0
 """Largest angle set on a sine bar [rad]: above it the angle grows too fast with the stack. Common practice."""
 
 
-def _cross(a: _Vector, b: _Vector) -> _Vector:
+def _cross(a: Vector, b: Vector) -> Vector:
     return (a[1] * b[2] - a[2] * b[1], a[2] * b[0] - a[0] * b[2], a[0] * b[1] - a[1] * b[0])
 
 
-def _frame(hand: str, nose_points: str, cutter_stands: str) -> tuple[_Vector, _Vector]:
+def _frame(hand: str, nose_points: str, cutter_stands: str) -> tuple[Vector, Vector]:
     """Unit vectors of the nose and from the wheel to the cutter. Raises: ValueError for words or places that do not go."""
     if hand not in ("right", "left"):
         raise ValueError(f"the hand is right or left, not {hand}")
     for word in (nose_points, cutter_stands):
-        if word not in _VECTORS:
+        if word not in VECTORS:
             raise ValueError(f"{word} is no direction; write left, right, up, down, above, front or back")
-    nose, cutter = _VECTORS[nose_points], _VECTORS[cutter_stands]
+    nose, cutter = VECTORS[nose_points], VECTORS[cutter_stands]
     if not any(_cross(nose, cutter)):
         raise ValueError(
             f"with the nose pointing {nose_points} the cutter cannot stand {cutter_stands}: beside the axis"

@@ -11,7 +11,7 @@ from setupcheck.jobfile.setups import Head, Setup
 from setupcheck.notation import show_angle
 from setupcheck.quantities.book import Known, Scope
 from setupcheck.quantities.route import machine_of
-from setupcheck.quantities.tilting import cuts_the_wheel, way_needed
+from setupcheck.quantities.tilting import cuts_the_wheel, direction_at_machine, way_needed
 from setupcheck.record import record
 from setupcheck.report.pictures import WIDEST, Picture
 from setupcheck.report.pictures.labels import SIZE
@@ -31,19 +31,6 @@ BODY, NOSE, WHEEL, RADIUS, FACE = 26.0, 8.0, 22.0, 18.0, 5.5
 signs, not sizes."""
 
 Vector = tuple[int, int, int]
-
-DIRECTIONS: dict[str, Vector] = {
-    "right": (1, 0, 0),
-    "left": (-1, 0, 0),
-    "back": (0, 1, 0),
-    "front": (0, -1, 0),
-    "up": (0, 0, 1),
-    "above": (0, 0, 1),
-}
-"""Directions at the machine: x to the operator's right, y away from him, z up, as in `worm.tilt`."""
-
-LEANS = {**DIRECTIONS, "nose-up": (0, 0, 1), "nose-down": (0, 0, -1)}
-"""Where the nose goes."""
 
 
 def offered(found: Review) -> Iterator[Picture]:
@@ -115,11 +102,11 @@ def _stand(found: Review, setup: Setup, head: Head) -> Stand | str:
         called = short(name or "its machine", SIZE, 50.0)
         missing = " and ".join(k for k, v in (("nose_points", nose), ("cutter_stands", cutter)) if v is None)
         return f"not drawn: {missing} of {called} not stated"
-    n, c = DIRECTIONS[nose], DIRECTIONS[cutter]
+    n, c = direction_at_machine(nose), direction_at_machine(cutter)
     if not any(_cross(n, c)):
         return f"not drawn: with the nose pointing {nose} the cutter cannot stand {cutter}"
     up = (0, 1, 0) if cutter == "above" else (0, 0, 1)
-    return Stand(n, c, _cross(up, c), up, LEANS[head.leans] if head.leans is not None else None)
+    return Stand(n, c, _cross(up, c), up, direction_at_machine(head.leans) if head.leans is not None else None)
 
 
 def _turns(stand: Stand) -> bool:
