@@ -2,20 +2,16 @@
 
 from __future__ import annotations
 
-import itertools
 import math
 import re
 from typing import Any
-from xml.etree import ElementTree
 
 import pytest
 
 from setupcheck.report.drawings import ACROSS, SCALES, UP, InsertDrawing, draw_insert
-from setupcheck.report.svg import room
+from tests.unit.report.svg_read import SVG, every_text_is_free, parsed, texts
 
-SVG = "{http://www.w3.org/2000/svg}"
 HEIGHTS = [0.25 * i for i in range(25)]
-Box = tuple[float, float, float, float]
 
 
 def profile(tip: float = 1.08, angle: float = 20.0, bend: float = 0.03) -> list[float]:
@@ -38,64 +34,12 @@ def drawing(**changes: Any) -> InsertDrawing:
     return InsertDrawing(**{**told, **changes})
 
 
-def parsed(text: str) -> ElementTree.Element:
-    return ElementTree.fromstring(text)
-
-
-def texts(svg: ElementTree.Element) -> list[tuple[str, Box]]:
-    """Each text with the room it takes: left, top, right, bottom."""
-    found = []
-    for node in svg.iter(f"{SVG}text"):
-        size, x, y = (float(node.attrib[key]) for key in ("font-size", "x", "y"))
-        wide = room(node.text or "", size)
-        start = x - wide * {"start": 0.0, "middle": 0.5, "end": 1.0}[node.attrib.get("text-anchor", "start")]
-        found.append((node.text or "", (start, y - 0.76 * size, start + wide, y + 0.22 * size)))
-    return found
-
-
-def strokes(svg: ElementTree.Element) -> list[tuple[tuple[float, float], tuple[float, float]]]:
-    """Every straight stroke: lines and pieces of polylines."""
-    found = []
-    for node in svg.iter(f"{SVG}line"):
-        x1, y1, x2, y2 = (float(node.attrib[key]) for key in ("x1", "y1", "x2", "y2"))
-        found.append(((x1, y1), (x2, y2)))
-    for node in svg.iter(f"{SVG}polyline"):
-        pairs = [tuple(float(v) for v in pair.split(",")) for pair in node.attrib["points"].split()]
-        found += [((a[0], a[1]), (b[0], b[1])) for a, b in itertools.pairwise(pairs)]
-    return found
-
-
-def crosses(stroke: tuple[tuple[float, float], tuple[float, float]], box: Box) -> bool:
-    (x1, y1), (x2, y2) = stroke
-    return any(
-        box[0] < x1 + (x2 - x1) * k / 200.0 < box[2] and box[1] < y1 + (y2 - y1) * k / 200.0 < box[3]
-        for k in range(201)
-    )
-
-
 CASES = [
     {"scale": scale, "right": widths, "left": widths, "measured": measured, "note": note}
     for scale in SCALES
     for widths in (profile(), profile(angle=35.0, bend=0.06), profile(tip=0.2, angle=14.0, bend=0.0))
     for measured, note in (((), ""), (((0.5, 1.3), (0.5, -1.31), (4.0, 2.4)), "farthest point 18 um outside the flank"))
 ]
-
-
-def every_text_is_free(svg: ElementTree.Element) -> None:
-    """On the sheet, on no other text, struck through by no line."""
-    width, height = (float(v) for v in svg.attrib["viewBox"].split()[2:])
-    boxes = texts(svg)
-    for text, box in boxes:
-        assert box[0] >= 0.0 and box[1] >= 0.0 and box[2] <= width and box[3] <= height, text
-    for (one, first), (other, second) in itertools.combinations(boxes, 2):
-        apart = first[2] <= second[0] or second[2] <= first[0] or first[3] <= second[1] or second[3] <= first[1]
-        assert apart, f"{one} lies on {other}"
-    fields = [[float(n.attrib[k]) for k in ("x", "y", "height")] for n in svg.iter(f"{SVG}rect") if "x" in n.attrib]
-    for text, box in boxes:  # a white field keeps the middle line off the angle
-        if any(abs(x - box[0]) < 0.01 and y < box[1] and box[3] < y + high for x, y, high in fields):
-            continue
-        for stroke in strokes(svg):
-            assert not crosses(stroke, box), f"{text} is struck through by {stroke}"
 
 
 @pytest.mark.parametrize("case", CASES)

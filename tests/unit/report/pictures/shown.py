@@ -4,13 +4,13 @@ from __future__ import annotations
 
 from functools import cache
 from pathlib import Path
-from xml.etree import ElementTree
 
 from setupcheck.flow import Review, review
 from setupcheck.jobfile.reading import read_job_text
 from setupcheck.report.pictures import Picture, pictures
+from tests.unit.report.svg_read import SVG as SVG
+from tests.unit.report.svg_read import paper, parsed
 
-SVG = "{http://www.w3.org/2000/svg}"
 ROOT = Path(__file__).resolve().parents[4]
 SHIPPED = sorted(path.stem for path in (ROOT / "jobs").glob("*.yaml"))
 MISTAKES = sorted(f"mistakes/{path.stem}" for path in (ROOT / "jobs" / "mistakes").glob("*.yaml"))
@@ -36,10 +36,9 @@ def shown(found: Review) -> dict[str, Picture]:
 
 def sheet(text: str) -> tuple[float, float]:
     """Width and height of a picture [mm of paper]."""
-    width, height = (float(v) for v in ElementTree.fromstring(text).attrib["viewBox"].split()[2:])
-    return width, height
+    return paper(parsed(text))
 
 
 def written(text: str) -> list[str]:
     """Every text of a picture, in its order."""
-    return [node.text or "" for node in ElementTree.fromstring(text).iter(f"{SVG}text")]
+    return [node.text or "" for node in parsed(text).iter(f"{SVG}text")]

@@ -2,12 +2,10 @@
 
 from __future__ import annotations
 
-import itertools
 import math
 import re
 from functools import cache
 from pathlib import Path
-from xml.etree import ElementTree
 
 import pytest
 
@@ -16,16 +14,13 @@ from setupcheck.flow import Review, review
 from setupcheck.report.pictures import WIDEST, pictures
 from setupcheck.report.pictures.pieces import Way, finished
 from setupcheck.report.pictures.shape import radius_at, solid
-from setupcheck.report.svg import room
 from tests.unit.report.sample import GEAR, WHEEL, changed, reviewed
+from tests.unit.report.svg_read import SVG, Stroke, every_text_is_free, parsed, strokes, texts
 
 ROOT = Path(__file__).resolve().parents[4]
 JOBS = sorted((ROOT / "jobs").glob("*.yaml"))
-SVG = "{http://www.w3.org/2000/svg}"
 TALLEST = {"part": 150.0, "hold": 120.0, "head": 140.0}
 LARGEST = 14_000
-Box = tuple[float, float, float, float]
-Stroke = tuple[tuple[float, float], tuple[float, float]]
 
 
 @cache
@@ -45,62 +40,8 @@ def ours(found: Review) -> list[str]:
 CASES = [(path.name, picture) for path in JOBS for picture in ours(job(path.name))]
 
 
-def parsed(text: str) -> ElementTree.Element:
-    return ElementTree.fromstring(text)
-
-
-def texts(svg: ElementTree.Element) -> list[tuple[str, Box]]:
-    """Each text with the room it takes: left, top, right, bottom."""
-    found = []
-    for node in svg.iter(f"{SVG}text"):
-        size, x, y = (float(node.attrib[key]) for key in ("font-size", "x", "y"))
-        wide = room(node.text or "", size)
-        start = x - wide * {"start": 0.0, "middle": 0.5, "end": 1.0}[node.attrib.get("text-anchor", "start")]
-        found.append((node.text or "", (start, y - 0.76 * size, start + wide, y + 0.22 * size)))
-    return found
-
-
 def words_of(text: str) -> list[str]:
     return [said for said, _ in texts(parsed(text))]
-
-
-def strokes(svg: ElementTree.Element) -> list[Stroke]:
-    """Every straight stroke: lines, pieces of polylines and of paths."""
-    found: list[Stroke] = []
-    for node in svg.iter(f"{SVG}line"):
-        x1, y1, x2, y2 = (float(node.attrib[key]) for key in ("x1", "y1", "x2", "y2"))
-        found.append(((x1, y1), (x2, y2)))
-    for node in svg.iter(f"{SVG}polyline"):
-        pairs = [tuple(float(v) for v in pair.split(",")) for pair in node.attrib["points"].split()]
-        found += [((a[0], a[1]), (b[0], b[1])) for a, b in itertools.pairwise(pairs)]
-    for node in svg.iter(f"{SVG}path"):
-        for move in re.findall(r"M(\S+) (\S+?)L(\S+) (\S+?)(?=M|$)", node.attrib["d"]):
-            x1, y1, x2, y2 = (float(v) for v in move)
-            found.append(((x1, y1), (x2, y2)))
-    return found
-
-
-def crosses(stroke: Stroke, box: Box) -> bool:
-    (x1, y1), (x2, y2) = stroke
-    if max(x1, x2) < box[0] or min(x1, x2) > box[2] or max(y1, y2) < box[1] or min(y1, y2) > box[3]:
-        return False
-    at = [k / 60.0 for k in range(61)]
-    return any(box[0] < x1 + (x2 - x1) * t < box[2] and box[1] < y1 + (y2 - y1) * t < box[3] for t in at)
-
-
-def every_text_is_free(text: str) -> None:
-    """On the sheet, on no other text, struck through by no line."""
-    svg = parsed(text)
-    width, height = (float(v) for v in svg.attrib["viewBox"].split()[2:])
-    boxes = texts(svg)
-    for said, box in boxes:
-        assert box[0] >= 0.0 and box[1] >= 0.0 and box[2] <= width and box[3] <= height, said
-    for (one, first), (other, second) in itertools.combinations(boxes, 2):
-        apart = first[2] <= second[0] or second[2] <= first[0] or first[3] <= second[1] or second[3] <= first[1]
-        assert apart, f"{one} lies on {other}"
-    for said, box in boxes:
-        for stroke in strokes(svg):
-            assert not crosses(stroke, box), f"{said} is struck through by {stroke}"
 
 
 def every_stroke_is_on_the_sheet(text: str) -> None:
@@ -114,7 +55,7 @@ def every_stroke_is_on_the_sheet(text: str) -> None:
 @pytest.mark.parametrize(("name", "picture"), CASES)
 def test_a_drawing_of_a_shipped_job_reads_well(name: str, picture: str) -> None:
     text = drawn(name, picture)
-    every_text_is_free(text)
+    every_text_is_free(parsed(text))
     every_stroke_is_on_the_sheet(text)
     svg = parsed(text)
     width, height = (float(v) for v in svg.attrib["viewBox"].split()[2:])
@@ -262,7 +203,7 @@ def test_a_head_that_leans_the_wrong_way_is_drawn_and_told_so() -> None:
     text = pictures(reviewed(changed(WHEEL, ("leans: nose-down", "leans: nose-up"))))["head-40"].draw()
     assert any(abs(y1 - y2) > 1.0 for (_, y1), (_, y2) in gaps(text))
     assert "WRONG WAY: it must lean nose-down" in words_of(text)
-    every_text_is_free(text)
+    every_text_is_free(parsed(text))
 
 
 def test_gaps_of_a_right_hand_wheel_fall_to_the_right_before_the_head_leans() -> None:
@@ -293,7 +234,7 @@ def test_every_place_of_a_head_can_be_drawn(nose: str, cutter: str, leans: str) 
         ("leans: nose-down", f"leans: {leans}"),
     )
     found = pictures(reviewed(text))["head-40"].draw()
-    every_text_is_free(found)
+    every_text_is_free(parsed(found))
     every_stroke_is_on_the_sheet(found)
 
 
@@ -344,7 +285,7 @@ def test_an_odd_part_is_drawn_or_said_not_to_be(surfaces: str) -> None:
     text = text.replace("    surfaces:\n", "    surfaces:\n      extra: {kind: face, at: 0, facing: -z}\n", 1)
     for name, one in pictures(reviewed(text)).items():
         if name.split("-")[0] in TALLEST:
-            every_text_is_free(one.draw())
+            every_text_is_free(parsed(one.draw()))
             every_stroke_is_on_the_sheet(one.draw())
 
 
@@ -381,7 +322,7 @@ def test_hostile_words_are_cleaned_cut_short_and_escaped() -> None:
             drawing = one.draw()
             assert "<script" not in drawing and "\u202e" not in drawing and "\u200f" not in drawing
             assert not re.search(r"[u]{60}", drawing)
-            every_text_is_free(drawing)
+            every_text_is_free(parsed(drawing))
 
 
 def test_many_surfaces_are_named_as_far_as_there_is_room() -> None:
@@ -392,7 +333,7 @@ def test_many_surfaces_are_named_as_far_as_there_is_room() -> None:
     text = BOUGHT[: BOUGHT.index("  shaft:")] + f"  thing:\n    surfaces:\n{rows}\n    given: [{given}]\n"
     text += "require: [{what: run-out, of: thing.s1, about: thing.s2, at_most: 90 um}]\n"
     drawing = pictures(reviewed(text))["part-thing"].draw()
-    every_text_is_free(drawing)
+    every_text_is_free(parsed(drawing))
     assert "s39" in " ".join(words_of(drawing))
 
 

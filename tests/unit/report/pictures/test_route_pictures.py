@@ -25,7 +25,7 @@ from tests.unit.report.pictures.shown import (
     shown,
     written,
 )
-from tests.unit.report.test_drawings import every_text_is_free, parsed
+from tests.unit.report.svg_read import every_text_is_free, parsed
 
 DEEPEST = {"datums": TALLEST, "stack": 85.0, "axial": 100.0}
 LARGEST = {"datums": 16_000, "stack": 6_000, "axial": 5_000}
