@@ -5,91 +5,33 @@ from __future__ import annotations
 import json
 import math
 import re
-from functools import cache
 
 import numpy as np
 import pytest
 
-from setupcheck.errors import JobError
-from setupcheck.flow import Review, review
-from setupcheck.jobfile.changing import changed, read_change
 from setupcheck.jobfile.reading import read_job_text
-from setupcheck.ledger.combine import Combined
 from setupcheck.ledger.figures import OverATurn
-from setupcheck.quantities.backlash_read import AsRead
-from setupcheck.quantities.book import Known, Open
+from setupcheck.quantities.book import Open
 from setupcheck.report.json import as_json
-from setupcheck.report.remedies import remedy_in_words
 from setupcheck.report.text import as_text
 from setupcheck.report.uncomputed import uncomputed
-from setupcheck.report.working import as_working
-from setupcheck.shipped import shipped
-from tests.jobs.worm_jobs import worm_job
-
-ROTATOR = shipped("jobs/rotator-worm-wheel.yaml").read_text("utf-8")
-MESH = "mesh: {wheel: wheel.teeth,"
-GAPS = (1, 10, 19, 28, 37, 46, 55, 64)
-TYPED = dict(zip(GAPS, (62.0, 58.0, 52.0, 48.0, 47.0, 50.0, 56.0, 61.0), strict=True))  # um
-TAKEN = "uncertainty: 2 um, end_float: taken-out"
-SLOPE = 2.0 * math.tan(math.radians(20.0))  # of the backlash over the distance of the axes
-ASKED = "  - {what: backlash, between: [5 um, 125 um]}\n"
-
-
-def job(read: dict[int, float], more: str = TAKEN, *changes: tuple[str, str]) -> str:
-    """The rotator's wheel with backlash read [um]."""
-    said = ", ".join(f"gap {gap}: {value!r} um" for gap, value in read.items())
-    text = ROTATOR.replace(MESH, f"{MESH} backlash_read: {{readings: {{{said}}}{', ' if more else ''}{more}}},")
-    for old, new in changes:
-        assert old in text
-        text = text.replace(old, new)
-    return text
-
-
-def wave(mean: float, amplitude: float, loose: int = 1, gaps: tuple[int, ...] = GAPS) -> dict[int, float]:
-    return {gap: mean + amplitude * math.cos(math.tau * (gap - loose) / 72.0) for gap in gaps}
-
-
-@cache
-def judged(text: str) -> Review:
-    return review(read_job_text(text, "job.yaml"))
-
-
-def answer(text: str, name: str) -> object:
-    book = judged(text).book
-    found = book.get(name, book.instances("mesh")[0])
-    return found.value if isinstance(found, Known) else found
-
-
-def um(text: str, name: str) -> float:
-    return 1e3 * float(str(answer(text, name)))
-
-
-def combined(text: str, what: str = "backlash.") -> Combined:
-    (found,) = [result for key, result in judged(text).results.items() if key.startswith(what)]
-    return found.combined
-
-
-def ends(text: str, what: str = "backlash.") -> tuple[float, float]:
-    worst = combined(text, what).worst
-    return 1e3 * worst.low, 1e3 * worst.high
-
-
-def verdict(text: str, rule: str) -> str:
-    found = [f.verdict for f in judged(text).evaluation.findings if f.rule == rule]
-    return ", ".join(sorted(set(found)))
-
-
-def remedy(text: str, rule: str, at: str = "") -> str:
-    (found,) = [f for f in judged(text).evaluation.findings if f.rule == rule and f.verdict != "pass" and at in f.at]
-    return remedy_in_words(judged(text), found)
-
-
-def block(text: str) -> str:
-    report = as_text(judged(text))
-    assert max(map(len, report.splitlines())) <= 80
-    found = re.search(r"^BACKLASH AS READ.*?(?=\n\n)", report, re.S | re.M)
-    return re.sub(r"\s+", " ", found[0]) if found else ""
-
+from tests.jobs.backlash_jobs import (
+    ASKED,
+    ROTATOR,
+    SLOPE,
+    TAKEN,
+    TYPED,
+    answer,
+    block,
+    combined,
+    ends,
+    job,
+    judged,
+    remedy,
+    um,
+    verdict,
+    wave,
+)
 
 # -- what rules ----------------------------------------------------------------------------------------------------------
 
@@ -395,93 +337,3 @@ def test_a_job_without_readings_has_none_of_it() -> None:
     assert json.loads(as_json(judged(ROTATOR)))["backlash_read"] is None
     rules = {f.rule for f in judged(ROTATOR).evaluation.findings}
     assert not rules & {"MESH-013", "MESH-014", "MESH-015", "MESH-016", "MEASURE-009"}
-
-
-# -- typed, printed ------------------------------------------------------------------------------------------------------
-
-
-def test_eight_places_are_typed_back_one_by_one_into_a_job_that_says_nothing_of_them() -> None:
-    keys = [f"mesh.backlash_read.readings.gap {gap}={value:g} um" for gap, value in TYPED.items()]
-    keys += ["mesh.backlash_read.uncertainty=2 um", "mesh.backlash_read.end_float=taken-out"]
-    loaded = changed(read_job_text(ROTATOR, "job.yaml"), [read_change(key) for key in keys])
-    assert review(loaded).results["backlash.wheel-teeth.spindle-bearings"].combined == combined(job(TYPED))
-
-
-def test_a_typo_on_the_way_is_still_refused() -> None:
-    with pytest.raises(JobError, match="backlash_reed"):
-        changed(read_job_text(ROTATOR, "job.yaml"), [read_change("mesh.backlash_reed.readings.gap 1=62 um")])
-
-
-def test_json_has_places_wave_and_high_spot() -> None:
-    told = json.loads(as_json(judged(job(TYPED))))["backlash_read"]
-    assert [one["gap"] for one in told["places"]] == list(GAPS)
-    assert (told["tightest_gap"], told["high_spot_gap"], told["unit"]) == (37, 34, "um")
-    assert sum(one["off_wave"] for one in told["places"]) == pytest.approx(0.0, abs=1e-9)
-
-
-def test_an_inch_file_prints_thou_and_reads_bare_radii_in_inches() -> None:
-    """The pair of another test in inches, with readings in thou at twice the reference circle."""
-    inch = worm_job(starts=1, hand="right", module=0.06, worm=0.88, teeth=90, face=0.44, radius=0.6, budget="0.2 thou")
-    for old, new in (
-        ("units: mm", "units: in"),
-        (" mm, uncertainty: 1 um", " in, uncertainty: 0.04 thou"),
-        (" ±0.010}", " ±0.0004}"),
-        (" ±0.01,", " ±0.0004,"),
-        ("from: -40,", "from: -1.6,"),
-        ("at: -35", "at: -1.4"),
-        ("at: -5,", "at: -0.2,"),
-        ("to: 20.44", "to: 1.24"),
-        ("to: 22.44", "to: 1.3"),
-        (" contact: exact,", ""),
-    ):
-        inch = inch.replace(old, new)
-    said = ", ".join(f"gap {gap}: {4.0 + 0.4 * math.cos(math.tau * (gap - 1) / 90)!r} thou" for gap in range(1, 91, 10))
-    more = "along: at 5.4, uncertainty: 0.2 thou, end_float: taken-out"
-    told = block(inch.replace(MESH, f"{MESH} backlash_read: {{readings: {{{said}}}, {more}}},"))
-    assert "gap 1 2.20 thou" in told and "mean 2.00 thou" in told and "± 0.10 thou" in told
-    assert "read with a dial at 5.4, and brought to the reference circle" in told
-
-
-def test_the_working_names_the_readings_and_how_the_swing_came_about() -> None:
-    found = judged(job(TYPED))
-    assert isinstance(answer(job(TYPED), "read.as_read"), AsRead)
-    told = re.sub(r"\s+", " ", as_working(found.loaded, found.book, "require[10]"))
-    assert "wheel, its backlash as read, over the turn: gives 7.7 um" in told and "gap 10 58.0 um" in told
-    assert "twice the amplitude" in as_working(found.loaded, found.book, "read.swing").replace("\n", " ")
-    assert "read square to the flank" in block(job(TYPED, f"along: normal, {TAKEN}"))
-    assert "brought to" not in block(job(TYPED))
-
-
-@pytest.mark.parametrize(
-    ("said", "problem"),
-    [
-        ("readings: {gap 73: 5 um}", "teeth has 72 gaps, and none is number 73"),
-        ("readings: {gap 1: 5 um, gap  1: 6 um}", "gap 1 is read twice"),
-        ("readings: {tooth 1: 5 um}", "'tooth 1' names no gap"),
-        ("readings: {gap 1: 20 arcsec}", "'20 arcsec' is an angle, and backlash is read as a length"),
-        ("readings: {gap 1: 2'}", "is an angle, and backlash is read as a length"),
-        ("readings: {gap 1: -5 um}", "'-5 um' is below zero, and a dial travels one way"),
-        ("readings: {gap 1: 5}", "5 has no unit, so it is not a length"),
-        ("readings: {gap 1: 5 mm}", "backlash of 5 mm is more than the pitch of the teeth, 4.71 mm"),
-        ("readings: {gap 1: [5 um]}", "one value belongs here, not a list"),
-        ("readings: {gap 1: 5 um}, end_float: 10 um", "'10 um' is not known here"),
-        ("readings: {gap 1: 5 um}, uncertainty: 2", "2 has no unit, so it is not a length"),
-        ("reading: {gap 1: 5 um}", "Did you mean readings?"),
-    ],
-)
-def test_readings_that_cannot_be_are_refused_at_their_place(said: str, problem: str) -> None:
-    with pytest.raises(JobError) as refused:
-        read_job_text(ROTATOR.replace(MESH, f"{MESH} backlash_read: {{{said}}},"), "job.yaml")
-    assert problem in " ".join(f"{p.problem}. {p.hint}" for p in refused.value.problems)
-    assert all(p.path.startswith("mesh.backlash_read") for p in refused.value.problems)
-
-
-@pytest.mark.parametrize("given", ["62 um", "[62 um, 58 um]", "true"])
-def test_one_value_for_all_places_is_refused_with_how_to_write_it(given: str) -> None:
-    with pytest.raises(JobError, match="backlash_read"):
-        read_job_text(ROTATOR.replace(MESH, f"{MESH} backlash_read: {given},"), "job.yaml")
-
-
-def test_a_way_of_stating_it_that_is_none_is_refused() -> None:
-    with pytest.raises(JobError, match="Write circular, normal, or at and a radius"):
-        judged(job(TYPED, f"along: sideways, {TAKEN}"))
