@@ -83,12 +83,12 @@ def command(
     if file is None:
         raise SetupcheckError("the name of the file is missing. Write it as in setupcheck new wheel.yaml")
     refuse_new(file)
-    talk = _Talk(asks=not yes and sys.stdin.isatty())
+    asking = _Asking(asks=not yes and sys.stdin.isatty())
     try:
         if like is not None:
-            started = _like(talk, file, like, title, job, {**said, **({"kind": kind} if kind else {})}, units)
+            started = _like(asking, file, like, title, job, {**said, **({"kind": kind} if kind else {})}, units)
         else:
-            started = _asked(talk, file, kind, title, job, units, said)
+            started = _asked(asking, file, kind, title, job, units, said)
     except (EOFError, KeyboardInterrupt):
         raise SetupcheckError("\nended before the last question; nothing was written") from None
     from setupcheck.report.started import as_started
@@ -97,7 +97,7 @@ def command(
     sys.stdout.write(as_started(started.review, str(file), started.text))
 
 
-class _Talk:
+class _Asking:
     """Asks where there is somebody to ask, else takes options and defaults."""
 
     def __init__(self, *, asks: bool) -> None:
@@ -138,19 +138,19 @@ def _list(examples: bool) -> None:
     sys.stdout.write("".join(f"{name:<22}{says}\n" for name, says in rows))
 
 
-def _title_and_job(talk: _Talk, title: str | None, job: str | None, usual: tuple[str, str]) -> tuple[str, str]:
+def _title_and_job(asking: _Asking, title: str | None, job: str | None, usual: tuple[str, str]) -> tuple[str, str]:
     from setupcheck.starting.layout import checked_text
 
     def text(what: str) -> Callable[[str], str]:
         return lambda said: checked_text(said, what)
 
-    _, head = talk.take("title", title, text("title"), usual[0], "What is it?", "title of the job, as on the drawing")
-    _, number = talk.take("job", job, text("job number"), usual[1], "Job number?", "as it is filed in your shop")
+    _, head = asking.take("title", title, text("title"), usual[0], "What is it?", "title of the job, as on the drawing")
+    _, number = asking.take("job", job, text("job number"), usual[1], "Job number?", "as it is filed in your shop")
     return head, number
 
 
 def _like(
-    talk: _Talk, file: Path, like: str, title: str | None, job: str | None, said: dict[str, str], units: str | None
+    asking: _Asking, file: Path, like: str, title: str | None, job: str | None, said: dict[str, str], units: str | None
 ) -> "Started":
     from setupcheck.starting.copying import copied, known_example, title_and_job
 
@@ -160,12 +160,12 @@ def _like(
         raise SetupcheckError(
             f"--{extra[0]} does not go with --like: an example keeps its sizes. Change them in the file"
         )
-    head, number = _title_and_job(talk, title, job, title_and_job(name))
+    head, number = _title_and_job(asking, title, job, title_and_job(name))
     return copied(name, title=head, job=number, file=str(file), schema=_has_schema(file))
 
 
 def _asked(
-    talk: _Talk,
+    asking: _Asking,
     file: Path,
     kind: str | None,
     title: str | None,
@@ -176,19 +176,19 @@ def _asked(
     from setupcheck.starting.answers import Answers, read_answer, units_of
     from setupcheck.starting.kinds import KINDS, command_of, kind_of, start
 
-    if talk.asks and kind is None:
+    if asking.asks and kind is None:
         _list(examples=False)
-    _, what = talk.take("kind", kind, kind_of, next(iter(KINDS)), "What kind of part?", "one of the above")
+    _, what = asking.take("kind", kind, kind_of, next(iter(KINDS)), "What kind of part?", "one of the above")
     _belongs(what, said)
-    _, unit = talk.take("units", units, units_of, "mm", "Which units?", "of sizes and positions in the file, mm or in")
-    head, number = _title_and_job(talk, title, job, (what.title, what.job))
+    _, unit = asking.take("units", units, units_of, "mm", "Which units?", "of sizes and positions in the file, mm or in")
+    head, number = _title_and_job(asking, title, job, (what.title, what.job))
     answers, texts = Answers(what.name, head, number, unit, {}), {}
     for question in what.questions():
 
         def read(text: str, question: "Question" = question, answers: "Answers" = answers) -> object:
             return read_answer(question, text, answers)
 
-        text, value = talk.take(
+        text, value = asking.take(
             question.name, said.get(question.name), read, question.default(answers), question.asks, question.explains
         )
         texts[question.name] = text

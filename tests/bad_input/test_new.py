@@ -15,7 +15,7 @@ from tests.bad_input.test_command import CHECKOUT, GENEROUS, command
 pty = pytest.importorskip("pty")
 
 
-def talk(arguments: list[str], answers: list[str], at: Path) -> tuple[int, str]:
+def answered(arguments: list[str], answers: list[str], at: Path) -> tuple[int, str]:
     """Exit code and everything printed, with somebody at the terminal who answers each prompt."""
     pid, terminal = pty.fork()
     if pid == 0:  # the child: nothing but the command
@@ -40,7 +40,7 @@ def talk(arguments: list[str], answers: list[str], at: Path) -> tuple[int, str]:
 
 
 def test_a_terminal_is_asked(tmp_path: Path) -> None:
-    code, told = talk(["new", "g.yaml"], ["spur-gear", "mm", "Gear", "", "3,5", "35", "", "", "", ""], tmp_path)
+    code, told = answered(["new", "g.yaml"], ["spur-gear", "mm", "Gear", "", "3,5", "35", "", "", "", ""], tmp_path)
     assert 0 == code, told
     assert "'3,5' is not a number" in told
     assert "teeth:   {kind: teeth, count: 35," in (tmp_path / "g.yaml").read_text(encoding="utf-8")
@@ -48,7 +48,7 @@ def test_a_terminal_is_asked(tmp_path: Path) -> None:
 
 def test_the_end_of_input_and_an_interrupt_at_a_terminal_write_nothing(tmp_path: Path) -> None:
     for key in ("\x04", "\x03"):
-        code, told = talk(["new", "g.yaml"], ["spur-gear", key], tmp_path)
+        code, told = answered(["new", "g.yaml"], ["spur-gear", key], tmp_path)
         assert 2 == code, told
         assert "nothing was written" in told
         assert "Traceback" not in told

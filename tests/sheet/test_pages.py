@@ -221,3 +221,20 @@ def test_commands_are_set_as_code_and_stay_text() -> None:
     text = as_sheet(told(WHEEL))
     assert "<code>setupcheck vary JOB --set &#39;KEY=VALUE&#39;</code>" in text
     assert "`" not in text
+
+
+def test_what_turns_and_jaws_that_stand_out_are_told_at_the_machine() -> None:
+    text = changed(
+        WHEEL,
+        ("centre: {on: rim, by: soft-jaws, at: 12,", "centre: {on: rim, by: soft-jaws, jaws_stand_out: 8 mm, at: 12,"),
+        (
+            "  - op: 20          #",
+            "  - op: 20\n    turning: {speed: 600 rpm, chuck_speed: 2500 rpm, off_centre: 0.5 kg, off_by: 10, bar_behind: 40}\n    #",
+        ),
+    )
+    held = said(page(text, 20).held)
+    assert "jaws stand out by 8.00 mm" in held["Axis"]
+    assert (
+        "at 600 rev/min; the chuck is marked 2500 rev/min at the most; 0.5 kg stand 10.00 mm off the axis; the bar sticks out "
+        "40.00 mm behind the spindle"
+    ) == held["Turns"]

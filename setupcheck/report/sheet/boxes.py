@@ -9,7 +9,7 @@ from collections.abc import Iterator, Mapping, Sequence
 
 from setupcheck.flow import Review
 from setupcheck.jobfile.models import Deviation, Dimension, Part, Round, Toothing
-from setupcheck.jobfile.setups import Cut, Hold, Join, Setup
+from setupcheck.jobfile.setups import Cut, Hold, Join, Setup, Spacer
 from setupcheck.jobfile.travel import Travel
 from setupcheck.quantities.devices import DEVICES
 from setupcheck.record import record
@@ -51,9 +51,6 @@ class Boxes:
         self.show = Showing(found)
         self.accept = accepted(found)
         self.fine, self.long = ("thou", "in") if found.book.inches else ("um", "mm")
-        self.toothed = {
-            surface for part in found.loaded.job.parts.values() for surface, s in part.surfaces.items() if _rings(s)
-        }
 
     # -- one kind of reading each --------------------------------------------------------------------------------------
 
@@ -142,11 +139,9 @@ class Boxes:
             says = f"angle on {hold.clock.on}"
             yield self.reading(f"{path}.clock.error", says, hold.clock.error, signed=True)
 
-    def _spacers(self, spacers: Sequence[object], path: str) -> Iterator[Row]:
+    def _spacers(self, spacers: Sequence[Spacer], path: str) -> Iterator[Row]:
         for number, spacer in enumerate(spacers, 1):
-            name, length = getattr(spacer, "name", ""), getattr(spacer, "length", None)
-            if isinstance(length, Dimension):
-                yield self.size(f"{path}.spacers[{number}].length", f"thickness of {name}", length)
+            yield self.size(f"{path}.spacers[{number}].length", f"thickness of {spacer.name}", spacer.length)
 
     def _travel(self, travel: Travel, path: str) -> Iterator[Row]:
         over = self.show.length(travel.over)
@@ -290,10 +285,6 @@ class Boxes:
         cells = (Cell(".seen_from", "a face"), Cell(".film", self.fine), *flanks)
         rows.append(self._row("mesh.mark", says, "", cells))
         return rows
-
-
-def _rings(surface: object) -> bool:
-    return isinstance(surface, Toothing)
 
 
 def _leaves_stock(cut: Cut) -> bool:

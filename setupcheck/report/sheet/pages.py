@@ -259,6 +259,7 @@ def _operation(found: Review, setup: Setup, boxes: Boxes, drawn: dict[str, Pictu
             *keeps,
             *(words.hold(setup.hold) if setup.hold is not None else []),
             *(words.travel(setup.travel) if setup.travel is not None else []),
+            *([words.turning(setup.turning)] if setup.turning is not None else []),
         ),
         head=tuple(words.head(setup.head)) if setup.head is not None else (),
         divide=tuple(words.divide(setup.divide, scope)) if setup.divide is not None else (),

@@ -10,6 +10,7 @@ from setupcheck.jobfile.models import Cutter
 from setupcheck.jobfile.prove_out import ProveOut
 from setupcheck.jobfile.setups import Centre, Cut, Head, Hold, Join, Setup
 from setupcheck.jobfile.travel import Travel
+from setupcheck.jobfile.turning import Turning
 from setupcheck.quantities.book import Known, Open, Scope
 from setupcheck.quantities.devices import DEVICES
 from setupcheck.record import record
@@ -77,6 +78,8 @@ class Words:
             parts.append(f"read at {self.show.length(centre.at)} along the part")
         if centre.grip_force is not None:
             parts.append(f"{centre.grip_force / 1000.0:g} kN at each jaw")
+        if centre.jaws_stand_out:
+            parts.append(f"jaws stand out by {self.show.length(centre.jaws_stand_out)}")
         if centre.clearance is not None:
             low, high = centre.clearance
             rests = RESTS[centre.rests or DEVICES[centre.by].rests]
@@ -89,6 +92,19 @@ class Words:
         for device in centre.through:
             parts.append(f"on {paper(device.by, 40)}, run-out {self.show.planned(device.runout) or 'not stated'}")
         return "; ".join(parts)
+
+    def turning(self, turning: Turning) -> Said:
+        """What turns with the spindle, and how fast."""
+        parts = []
+        if turning.speed is not None:
+            parts.append(f"at {turning.speed:g} rev/min")
+        if turning.chuck_speed is not None:
+            parts.append(f"the chuck is marked {turning.chuck_speed:g} rev/min at the most")
+        if turning.off_centre is not None and turning.off_by is not None:
+            parts.append(f"{turning.off_centre:g} kg stand {self.show.length(turning.off_by)} off the axis")
+        if turning.bar_behind is not None:
+            parts.append(f"the bar sticks out {self.show.length(turning.bar_behind)} behind the spindle")
+        return Said("Turns", "; ".join(parts))
 
     def head(self, head: Head) -> list[Said]:
         """Tilt, side and middle of the head."""
