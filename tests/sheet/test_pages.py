@@ -223,13 +223,16 @@ def test_commands_are_set_as_code_and_stay_text() -> None:
     assert "`" not in text
 
 
+TURNING = "{speed: 600 rpm, chuck_speed: 2500 rpm, off_centre: 0.5 kg, off_by: 10, bar_behind: 40}"
+
+
 def test_what_turns_and_jaws_that_stand_out_are_told_at_the_machine() -> None:
     text = changed(
         WHEEL,
         ("centre: {on: rim, by: soft-jaws, at: 12,", "centre: {on: rim, by: soft-jaws, jaws_stand_out: 8 mm, at: 12,"),
         (
             "  - op: 20          #",
-            "  - op: 20\n    turning: {speed: 600 rpm, chuck_speed: 2500 rpm, off_centre: 0.5 kg, off_by: 10, bar_behind: 40}\n    #",
+            f"  - op: 20\n    turning: {TURNING}\n    #",
         ),
     )
     held = said(page(text, 20).held)
