@@ -15,7 +15,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from setupcheck.ledger import teeth
-from setupcheck.ledger.account import Account
+from setupcheck.ledger.account import NOTHING, Account
 from setupcheck.ledger.causes import Cause
 from setupcheck.ledger.route import Pattern, Scatter
 from setupcheck.record import record
@@ -57,16 +57,25 @@ class Figure(Protocol):
 def vector_pushes(account: Account, factor: float) -> tuple[float, list[Push]]:
     """(factor |vector sum of known means| with the unnamed constant alone as base, pushes of all causes).
 
-    A known run-out counts by its component along the sum of all known ones, so one that cancels counts negative.
+    A known run-out counts by its component along the sum of all known ones, so one that cancels counts negative; where
+    they all cancel there is no such direction, and none of them counts.
     """
     known = account.known()
-    towards = known / abs(known) if abs(known) > 0.0 else 1 + 0j
+    towards = known / abs(known) if abs(known) > NOTHING else 0j
     found = []
     for cause, (a, b) in account.terms.items():
         along = ((a * cause.mean + b * cause.mean.conjugate()) * towards.conjugate()).real
         up = factor * (account.reach(cause) * cause.bound + along)
         found.append(Push(cause, max(-up, 0.0), up, factor * along))
     return factor * (account.constant * towards.conjugate()).real, found
+
+
+def taken_away(pushes: list[Push]) -> list[Push]:
+    """The pushes of `something - |vector|`, from those of the vector: it is least by its longest, most where it is zero.
+
+    No cause adds anything to that most, a known part that takes away from another least of all.  Source: geometry.
+    """
+    return [Push(p.cause, p.up, 0.0, -p.known) for p in pushes]
 
 
 def real_pushes(account: Account, factor: float = 1.0) -> tuple[float, list[Push]]:
@@ -196,7 +205,7 @@ class Stock:
         return self.depth - self._vector().base()
 
     def pushes(self) -> list[Push]:
-        return [Push(p.cause, p.up, p.down, -p.known) for p in self._vector().pushes()]
+        return taken_away(self._vector().pushes())
 
     def undetermined(self) -> tuple[str, ...]:
         return self._vector().undetermined()
@@ -375,8 +384,7 @@ class FaceStock:
         return real_pushes(self.axial)[0] - vector_pushes(self.lean, self.radius)[0]
 
     def pushes(self) -> list[Push]:
-        lean = [Push(p.cause, p.up, p.down, -p.known) for p in vector_pushes(self.lean, self.radius)[1]]
-        return merged(real_pushes(self.axial)[1], lean)
+        return merged(real_pushes(self.axial)[1], taken_away(vector_pushes(self.lean, self.radius)[1]))
 
     def undetermined(self) -> tuple[str, ...]:
         return tuple(dict.fromkeys(self.axial.undetermined() + self.lean.undetermined()))

@@ -60,7 +60,7 @@ def test_verdict_and_warnings_stand_before_the_numbers(tmp_path: Path) -> None:
     ]
     assert sorted(places) == places
     assert "72 waves): every station sees it alike" in told
-    assert all(len(line) <= 80 for line in told.splitlines())
+    assert all(len(line.replace(str(tmp_path), "")) <= 80 for line in told.splitlines())  # a path has no place to break
 
 
 def test_a_full_test_tells_everything_in_trade_terms(tmp_path: Path) -> None:

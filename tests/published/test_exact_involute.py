@@ -77,7 +77,7 @@ parts:
       teeth: {{kind: teeth, count: {teeth}, on_circle: 180, at: 0, pressure_angle: {alpha} deg}}
       bore:  {{kind: bore, diameter: 40, from: -10, to: 10}}
     given:
-      - {{of: teeth, about: bore, runout: {{measured: 40 um, high_at: {high_at} deg}}}}
+      - {{of: teeth, about: bore, runout: {{measured: 40 um, high_at: {high_at} deg}}, division: 0"}}
 require:
   - {{what: cumulative-pitch, of: wheel.teeth, about: wheel.bore, at_most: 60 um}}
   - {{what: single-pitch, of: wheel.teeth, about: wheel.bore, at_most: 10 um}}

@@ -48,7 +48,7 @@ parts:
         module: {module}
       bore:  {{kind: bore, diameter: 30, from: -15, to: 15}}
     given:
-      - {{of: teeth, about: bore, runout: {{at_most: {runout} um}}}}
+      - {{of: teeth, about: bore, runout: {{at_most: {runout} um}}, division: 0"}}
 require:
   - {{what: single-pitch, of: gear.teeth, about: gear.bore, grade: {grade}}}
   - {{what: cumulative-pitch, of: gear.teeth, about: gear.bore, grade: {grade}}}

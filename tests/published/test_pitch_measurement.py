@@ -61,7 +61,7 @@ parts:
       pins: {{kind: holes, count: {count}, on_circle: 100, at: 0}}
       bore: {{kind: bore, diameter: 40, from: -10, to: 10}}
     given:
-      - {{of: pins, about: bore, runout: {{measured: 20 um{direction}}}}}
+      - {{of: pins, about: bore, runout: {{measured: 20 um{direction}}}, division: 0"}}
 require:
   - {{what: gap-centre-pitch, of: plate.pins, about: plate.bore, at_most: 60 um}}
   - {{what: single-pitch, of: plate.pins, about: plate.bore, at_most: 60 um}}

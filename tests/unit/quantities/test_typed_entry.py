@@ -58,12 +58,12 @@ def test_an_inch_job_is_typed_in_thousandths() -> None:
 
 def test_an_entry_is_taken_out_and_another_put_in_at_once() -> None:
     loaded = load_job(shipped("jobs/coupling-hub.yaml"))
-    edits = [Drop("setups.30.hold"), Drop("setups.30.looks_at_tool"), Change("setups.30.keeps", "20")]
+    edits = [Drop("setups.40.hold"), Drop("setups.40.looks_at_tool"), Change("setups.40.keeps", "30")]
     after = edited(loaded, edits)
-    setup = next(s for s in after.job.setups if s.op == 30)
-    assert (setup.hold, setup.keeps, setup.looks_at_tool) == (None, 20, None)
-    assert next(s for s in loaded.job.setups if s.op == 30).hold is not None
-    assert loaded.tree.data["setups"][2]["hold"]  # type: ignore[index, call-overload]
+    setup = next(s for s in after.job.setups if s.op == 40)
+    assert (setup.hold, setup.keeps, setup.looks_at_tool) == (None, 30, None)
+    assert next(s for s in loaded.job.setups if s.op == 40).hold is not None
+    assert loaded.tree.data["setups"][3]["hold"]  # type: ignore[index, call-overload]
 
 
 def test_what_the_reader_refuses_is_refused() -> None:
