@@ -12,6 +12,10 @@ MACHINE_KINDS = ("lathe", "dividing-head", "rotary-table", "mill", "grinder", "d
 """A machine that needs no record of its own may be called by its kind."""
 
 
+BLANKS = ("bar", "blank", "billet", "casting", "forging", "stock")
+A_BLANK = "What the part is made from is a surface too: {name}: {{kind: cylinder, diameter: 95, from: -5, to: 25, made: stock}}"
+"""What a newcomer calls the piece before the first cut, and how it is written; the sizes are an example."""
+
 LONGEST_OP = 6
 """Digits of an operation number; the models allow 1 to 100,000."""
 
@@ -54,7 +58,8 @@ def find_surface(text: str, surfaces: Mapping[str, Sequence[str]], part: str | N
             if part is not None
             else tuple(dict.fromkeys(s for p in surfaces for s in surfaces[p]))
         )
-        return f"no surface is called {quoted(name)}. {_offer(name, inside, '')}"
+        blank = f". {A_BLANK.format(name=name)}" if name in BLANKS else ""
+        return f"no surface is called {quoted(name)}. {_offer(name, inside, '')}{blank}"
     both = " or ".join(f"{p}.{name}" for p in owners)
     return f"{quoted(name)} is a surface of {len(owners)} parts. Write {both}"
 
