@@ -202,14 +202,6 @@ def force_asked(join: Join, pair: Pair) -> float | None:
     return math.hypot(axial, 2.0 * torque / pair.diameter)
 
 
-def load_stated(join: Join, pair: Pair, op: int) -> str | Open:
-    """stated, or the key to fill: whether the job says what a joint that holds by interference must carry, 0 N m included.
-
-    Source: the job file.
-    """
-    return "stated" if join.must_carry else Open((f"setups.{op}.join.must_carry",))
-
-
 def holds_to(pair: Pair, least: float, smoothing: float, friction: float, asked: float) -> float | None:
     """Temperature of the whole joint up to which the loosest pair still holds what it must [degC]; None where it holds at any.
 
@@ -403,15 +395,6 @@ STRENGTH = (
         force_asked,
         {"join": ":", **_PAIR},
         "force at the seat the joint must carry",
-    ),
-    Quantity(
-        "fit.load_stated",
-        "join",
-        "",
-        0,
-        load_stated,
-        {"join": ":", **_PAIR, "op": "@op"},
-        "whether the job says what the joint must carry",
     ),
     Quantity(
         "fit.holds_to",

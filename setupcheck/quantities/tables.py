@@ -19,6 +19,7 @@ from setupcheck.quantities.cutting import CUTTING
 from setupcheck.quantities.division import DIVIDE
 from setupcheck.quantities.eccentric import ECCENTRIC
 from setupcheck.quantities.exact_gap import EXACT
+from setupcheck.quantities.fit_stated import FIT_STATED
 from setupcheck.quantities.growing import GROWING
 from setupcheck.quantities.head_setting import HEAD
 from setupcheck.quantities.heat_checks import HEAT_CHECKS
@@ -305,6 +306,7 @@ TABLES: tuple[Quantity, ...] = (
     *JOINING,
     *KEYWAYS,
     *STRENGTH,
+    *FIT_STATED,
     *IN_STATES,
     *GROWING,
     *CHOOSING,

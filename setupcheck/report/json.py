@@ -18,6 +18,7 @@ from setupcheck.report.insert import inserts_as_data
 from setupcheck.report.joint import joints_as_data
 from setupcheck.report.remedies import remedy_in_words
 from setupcheck.report.rests import first_as_data, record_as_data
+from setupcheck.report.taken import taken
 from setupcheck.report.then_now import then_of
 from setupcheck.report.uncomputed import uncomputed
 from setupcheck.report.wording import clean
@@ -90,6 +91,7 @@ def as_data(found: Review) -> dict[str, object]:
             {"at": one.at, "line": one.line, "what": clean(f"{one.owner}: {one.what}")}
             for one in uncomputed(found.loaded)
         ],
+        "taken": [{"at": clean(one.at), "what": one.what} for one in taken(found.loaded)],
     }
 
 

@@ -20,6 +20,7 @@ from setupcheck.report.progress import still_to_move
 from setupcheck.report.prove_out import prove_outs
 from setupcheck.report.remedies import remedy_in_words
 from setupcheck.report.rests import how_known, measure_first, record_used, rests_in_words
+from setupcheck.report.taken import taken, taken_in_lines
 from setupcheck.report.then_now import then_now
 from setupcheck.report.uncomputed import in_lines, uncomputed
 from setupcheck.report.wording import clean, finer, in_unit, title_of, unit_of, wrap
@@ -55,6 +56,7 @@ def as_text(found: Review, *, everything: bool = False) -> str:
         record_used(found),
         _house(found),
         _uncomputed(found),
+        _taken(found),
         dials_in_words(found, everything=everything),
         lengths_in_words(found, everything=everything),
         _cautions(found, everything),
@@ -319,6 +321,14 @@ def _uncomputed(found: Review) -> Iterator[str]:
         return
     yield "NOT COMPUTED BY THIS VERSION"
     for line in in_lines(stated):
+        yield from wrap(line, first="  ", rest="      ")
+
+
+def _taken(found: Review) -> Iterator[str]:
+    lines = taken_in_lines(taken(found.loaded))
+    if lines:
+        yield "TAKEN WHERE NOTHING IS WRITTEN"
+    for line in lines:
         yield from wrap(line, first="  ", rest="      ")
 
 

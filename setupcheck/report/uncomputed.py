@@ -195,6 +195,9 @@ def _of_the_wheel(loaded: LoadedJob) -> Iterator[str]:
                 yield from ("worm.material", "mesh.housing", "mesh.serves_at", f"parts.{wheel.part}.properties")
 
 
+_OF_A_CONE = ("tilt", "leans", "uncertainty", "by", "sine_bar", "blocks")
+
+
 def _of_heads(loaded: LoadedJob) -> Iterator[str]:
     """A head that is tilted for a worm wheel: compared with the worm, with the side it leans to and how it is set."""
     for setup in loaded.job.setups:
@@ -202,7 +205,8 @@ def _of_heads(loaded: LoadedJob) -> Iterator[str]:
             yield from (f"setups.{setup.op}.head", "mesh.shaft_angle_error")
             yield from (f"machines.{setup.machine}.{key}" for key in ("nose_points", "cutter_stands"))
         elif bevel_of(loaded, setup) is not None:
-            yield from (f"setups.{setup.op}.head.{key}" for key in ("tilt", "uncertainty", "by", "sine_bar", "blocks"))
+            yield from (f"setups.{setup.op}.head.{key}" for key in _OF_A_CONE)
+            yield f"machines.{setup.machine}.cutter_stands"
         elif setup.head is not None and setup.head.tilt == 0.0:
             yield f"setups.{setup.op}.head.tilt"
 

@@ -84,6 +84,18 @@ def needed_lean(*, hand: str, nose_points: str, cutter_stands: str) -> Lean:
     return _LEANS[(sign * x, sign * y, sign * z)]
 
 
+def lean_towards(cutter_stands: str, *, away: bool = False) -> Lean:
+    """The word for a nose that goes towards where the cutter stands, or away from it. Raises: KeyError for another word.
+
+    Source: the operator's directions, as above.
+
+    >>> lean_towards("above"), lean_towards("front", away=True)
+    ('nose-up', 'back')
+    """
+    x, y, z = VECTORS[cutter_stands]
+    return _LEANS[(-x, -y, -z) if away else (x, y, z)]
+
+
 def lean_is_right(said: str, *, hand: str, nose_points: str, cutter_stands: str) -> bool:
     """Whether the head leans the way the hand needs. False for the opposite way and for a lean that turns no gap.
 

@@ -183,7 +183,44 @@ def test_a_tilt_by_a_scale_takes_its_typical_error_into_the_depth() -> None:
 
 def test_no_rule_of_a_worm_speaks_of_a_bevel() -> None:
     rules = {f.rule for f in reviewed(BEVEL).evaluation.findings if f.rule.startswith("TILT-")}
-    assert rules == {"TILT-007", "TILT-008", "TILT-010"}
+    assert rules == {"TILT-007", "TILT-008", "TILT-010", "TILT-011"}
+
+
+@pytest.mark.parametrize(
+    ("leans", "stands", "looks", "verdict"),
+    [
+        ("nose-up", "above", "+z", "pass"),
+        ("nose-down", "above", "+z", "fail"),
+        ("nose-down", "above", "-z", "pass"),  # the small end at the nose: the apex is on the head's side
+        ("front", "front", "+z", "pass"),
+        ("back", "front", "+z", "fail"),
+        ("front", "above", "+z", "fail"),
+    ],
+)
+def test_the_head_of_a_bevel_leans_towards_the_cutter_with_the_small_end_outside(
+    leans: str, stands: str, looks: str, verdict: str
+) -> None:
+    of_gaps = "    machine: dividing-head-N\n    looks_at_tool: "
+    found = reviewed(
+        BEVEL,
+        ("leans: nose-up", f"leans: {leans}"),
+        ("cutter_stands: above", f"cutter_stands: {stands}"),
+        (f"{of_gaps}+z", f"{of_gaps}{looks}"),
+    )
+    assert [f.verdict for f in found.evaluation.findings if f.rule == "TILT-011"] == [verdict]
+
+
+@pytest.mark.parametrize(
+    ("gone", "asked"),
+    [
+        (", cutter_stands: above", "machines.dividing-head-N.cutter_stands"),
+        (", leans: nose-up", "setups.30.head.leans"),
+        (", to_diameter: 30.910", "to_diameter"),
+    ],
+)
+def test_a_lean_that_cannot_be_told_is_open(gone: str, asked: str) -> None:
+    found = [f for f in reviewed(BEVEL, (gone, "")).evaluation.findings if f.rule == "TILT-011"]
+    assert [f.verdict for f in found] == ["open"] and asked in f"{found[0].message} {found[0].missing}"
 
 
 # -- the sprocket --------------------------------------------------------------------------------------------------------

@@ -1,0 +1,99 @@
+"""What was taken where the job file says nothing: a default is told, so that nobody takes it for what the planner wrote."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator
+from itertools import groupby
+
+from setupcheck.jobfile.models import Flat, Round
+from setupcheck.jobfile.names import Ref
+from setupcheck.jobfile.reading import LoadedJob
+from setupcheck.jobfile.setups import Setup
+from setupcheck.quantities.dividing import HAS_WHEEL
+from setupcheck.quantities.pairing import FITTED
+from setupcheck.record import record
+from setupcheck.report.wording import clean
+
+FACED = ("face-run-out", "squareness")
+"""Figures of a face that are judged across a circle."""
+OF_FACES = (*FACED, "length", "allowance")
+
+
+@record
+class Taken:
+    """One entry that is left out: its path in the job file and what stands in for it."""
+
+    at: str
+    what: str
+
+
+def taken(loaded: LoadedJob) -> tuple[Taken, ...]:
+    """Every default that this job's figures may rest on, alike ones side by side."""
+    return tuple(sorted(_all(loaded), key=lambda one: one.what))
+
+
+def taken_in_lines(found: tuple[Taken, ...]) -> list[str]:
+    """One text for each default: `the middle of the surface: setups.10.hold.centre.at, setups.20.hold.centre.at`."""
+    return [
+        f"{what}: {', '.join(clean(one.at) for one in alike)}"
+        for what, alike in groupby(found, key=lambda one: one.what)
+    ]
+
+
+def _all(loaded: LoadedJob) -> Iterator[Taken]:
+    job = loaded.job
+    if "confidence" not in job.model_fields_set and job.require:
+        yield Taken("confidence", "likely means 95 in 100 draws")
+    if "room" not in job.model_fields_set and any(s.join is not None and s.join.heat is not None for s in job.setups):
+        yield Taken("room", "the shop at 20 degC")
+    for setup in job.setups:
+        yield from _of_setup(loaded, setup)
+    for i, required in enumerate(job.require, start=1):
+        if required.what in FACED and required.across is None:
+            yield Taken(f"require[{i}].across", "judged across the face's own diameter")
+    for ref in _faces(loaded):
+        surface = _surface(loaded, ref)
+        if isinstance(surface, Flat) and surface.diameter is None:
+            at = f"parts.{ref.part}.surfaces.{ref.surface}.diameter"
+            yield Taken(at, "a face that ends where the metal beside it does")
+
+
+def _surface(loaded: LoadedJob, ref: Ref) -> object:
+    return loaded.job.parts[ref.part].surfaces[ref.surface]
+
+
+def _faces(loaded: LoadedJob) -> Iterator[Ref]:
+    """What is cut, judged or met by another part: where the size of a face can count. Each once."""
+    job = loaded.job
+    named = [loaded.ref(name, setup.part) for setup in job.setups for name in setup.cut]
+    named += [loaded.ref(text) for r in job.require if r.what in OF_FACES for text in (r.of, r.about) if text]
+    named += [loaded.ref(s.join.stop.on) for s in job.setups if s.join is not None and s.join.stop is not None]
+    yield from dict.fromkeys(Ref(ref.part, ref.surface) for ref in named)
+
+
+def _of_setup(loaded: LoadedJob, setup: Setup) -> Iterator[Taken]:
+    path = f"setups.{setup.op}"
+    hold = setup.hold
+    for key in ("centre", "and_centre"):
+        plane = getattr(hold, key, None)
+        if plane is None or plane.at is not None or plane.grip is not None:
+            continue
+        if not isinstance(_surface(loaded, loaded.ref(plane.on, setup.part)), Round):
+            continue  # a centre hole has no length
+        far = hold is not None and hold.centre is not None and key == "and_centre" and hold.centre.on == plane.on
+        yield Taken(f"{path}.hold.{key}.at", f"held {'at the far end' if far else 'in the middle'} of the surface")
+    divide = setup.divide
+    if divide is not None and divide.by in HAS_WHEEL and divide.by != "theodolite" and divide.clamp is None:
+        yield Taken(f"{path}.divide.clamp", "clamping shifts nothing beyond the setting")
+    for name, cut in setup.cut.items():
+        ref = loaded.ref(name, setup.part)
+        if getattr(_surface(loaded, ref), "kind", "") != "holes":
+            continue
+        for key in ("radial", "tangential"):
+            if cut.each is None or getattr(cut.each, key) is None:
+                yield Taken(f"{path}.cut.{name}.each.{key}", "single holes stand where the division has them")
+    if setup.join is not None and setup.join.by in FITTED:
+        inner = loaded.ref(setup.join.inner)
+        surface, bored = _surface(loaded, inner), loaded.job.parts[inner.part].surfaces.values()
+        if isinstance(surface, Round) and surface.hole is None and all(s.kind != "bore" for s in bored):
+            yield Taken(f"parts.{inner.part}.surfaces.{inner.surface}.hole", "a solid shaft")
