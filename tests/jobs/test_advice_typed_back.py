@@ -54,10 +54,11 @@ def said(pattern: str, remedy: str) -> tuple[str, ...]:
 
 
 def test_a_shim_is_told_as_the_entry_that_is_typed() -> None:
-    text = job((SHIM, "error: 0 um"))
+    text = job((f", {SHIM}", ""))
     (entry,) = said(r"\(setups\.70\.join\.stop, (spacers: .*\]), with its own limits\)", broken(text, "PLACE-001"))
     assert entry == "spacers: [{name: shim, length: 1.5000 ±0.003}]"
-    assert clears(text.replace("error: 0 um", entry), "PLACE-001")
+    stop = "against: spindle.shoulder, "
+    assert clears(text.replace(stop, f"{stop}{entry}, "), "PLACE-001")
 
 
 def test_a_shim_that_is_there_is_told_where_it_stands() -> None:

@@ -115,7 +115,9 @@ def depends(found: Review, base: str) -> set[str]:
         for key, result in found.results.items()
         for share in result.combined.shares
         for cause in ((share.cause, *share.cause.of.origins()) if share.cause.of is not None else (share.cause,))
-        if share.worst > 0.0 and any(path == base or path.startswith(f"{base}.") for path in cause.paths)
+        if share.worst > 0.0
+        and (cause is share.cause or cause.bound > 0.0)  # planned at nothing, it moves no high point
+        and any(path == base or path.startswith(f"{base}.") for path in cause.paths)
     }
 
 
