@@ -17,6 +17,7 @@ from setupcheck.report.wording import clean
 FACED = ("face-run-out", "squareness")
 """Figures of a face that are judged across a circle."""
 OF_FACES = (*FACED, "length", "allowance")
+LOADS = {"torque": "torque", "axial_force": "force along the axis"}
 
 
 @record
@@ -76,10 +77,13 @@ def _of_setup(loaded: LoadedJob, setup: Setup) -> Iterator[Taken]:
     hold = setup.hold
     for key in ("centre", "and_centre"):
         plane = getattr(hold, key, None)
-        if plane is None or plane.at is not None or plane.grip is not None:
+        if plane is None or plane.at is not None:
             continue
         if not isinstance(_surface(loaded, loaded.ref(plane.on, setup.part)), Round):
             continue  # a centre hole has no length
+        if plane.grip is not None:
+            yield Taken(f"{path}.hold.{key}.at", "held in the middle of the grip")
+            continue
         far = hold is not None and hold.centre is not None and key == "and_centre" and hold.centre.on == plane.on
         yield Taken(f"{path}.hold.{key}.at", f"held {'at the far end' if far else 'in the middle'} of the surface")
     divide = setup.divide
@@ -94,6 +98,9 @@ def _of_setup(loaded: LoadedJob, setup: Setup) -> Iterator[Taken]:
                 yield Taken(f"{path}.cut.{name}.each.{key}", "single holes stand where the division has them")
     if setup.join is not None and setup.join.by in FITTED:
         inner = loaded.ref(setup.join.inner)
+        if setup.join.must_carry:
+            for load in LOADS.keys() - setup.join.must_carry.keys():
+                yield Taken(f"{path}.join.must_carry.{load}", f"the joint carries no {LOADS[load]}")
         surface, bored = _surface(loaded, inner), loaded.job.parts[inner.part].surfaces.values()
         if isinstance(surface, Round) and surface.hole is None and all(s.kind != "bore" for s in bored):
             yield Taken(f"parts.{inner.part}.surfaces.{inner.surface}.hole", "a solid shaft")
