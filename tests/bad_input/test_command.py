@@ -81,7 +81,7 @@ FILES: dict[str, tuple[Callable[[Path], object], str]] = {
     ),
     "100 MB": (
         a_hundred_megabytes,
-        "job.yaml: the file has 100.0 MB, more than 2 MB. Name a job file, written as YAML\n",
+        "job.yaml: the file has 100.0 MB, more than 2 MB. Name a job file, written as\n  YAML\n",
     ),
     "1.9 MB of entries": (
         content(lines(70_000, "  - {what: torque, of: 50}\n")),
