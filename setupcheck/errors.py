@@ -8,6 +8,7 @@ from collections.abc import Iterable, Sequence
 from setupcheck.record import record
 
 MOST_SHOWN = 50  # problems printed of one file; our screening choice: nobody repairs more in one go
+WIDTH = 80  # columns of a terminal, as of every report
 WIDEST_LINE = 100  # characters of a source line that are shown; our screening choice
 _BEFORE_CARET = 30  # characters kept before the caret when a long line is cut; our screening choice
 
@@ -57,7 +58,17 @@ class JobError(SetupcheckError):
         self.problems = found
 
     def __str__(self) -> str:
-        shown = [_shown(problem, self.file, self.lines) for problem in self.problems[:MOST_SHOWN]]
+        return self._told(None)
+
+    def wrapped(self, width: int = WIDTH) -> str:
+        """The same for a terminal: what is wrong and what to write in lines of at most `width` columns.
+
+        A quoted line with its caret stays whole, as do an example of several lines and a name too long to break.
+        """
+        return self._told(width)
+
+    def _told(self, width: int | None) -> str:
+        shown = [_shown(problem, self.file, self.lines, width) for problem in self.problems[:MOST_SHOWN]]
         left = len(self.problems) - len(shown)
         if left:
             shown.append(f"and {left} more")
@@ -131,19 +142,31 @@ def _sentence(problem: str, hint: str) -> str:
     return "\n".join([printable(first), *(f"    {printable(line)}" for line in more)])  # an example of several lines
 
 
-def _shown(problem: Problem, file: str, lines: Sequence[str]) -> str:
+def _folded(text: str, width: int | None) -> str:
+    """The first line of a text in lines of at most `width` columns, the later ones indented by two; the rest as it is."""
+    first, *more = text.split("\n")
+    if width is None or len(first) <= width:
+        return text
+    import textwrap  # few messages need it
+
+    folded = textwrap.wrap(first, width, subsequent_indent="  ", break_long_words=False, break_on_hyphens=False)
+    return "\n".join([*folded, *more])
+
+
+def _shown(problem: Problem, file: str, lines: Sequence[str], width: int | None) -> str:
     says = _sentence(problem.problem, problem.hint)
     name, path = printable(file), printable(problem.path)
     if problem.line < 1:
-        return f"{name}  {path}: {says}" if path else f"{name}: {says}"
+        return _folded(f"{name}  {path}: {says}" if path else f"{name}: {says}", width)
     head = f"{name}:{problem.line}:{problem.column}  {path}".rstrip()
+    says = _folded(f"  {says}", width)
     if problem.line > len(lines):
-        return f"{head}\n  {says}"
+        return f"{head}\n{says}"
     text, start, length = _window(lines[problem.line - 1].rstrip("\r\n"), problem.column - 1, problem.length)
     number = f"{problem.line:>6}"
     blank = " " * len(number)
     under = " " * _width(text[:start]) + "^" * max(1, _width(text[start : start + length]))
-    return f"{head}\n{number} | {text}\n{blank} | {under}\n  {says}"
+    return f"{head}\n{number} | {text}\n{blank} | {under}\n{says}"
 
 
 def _window(line: str, start: int, length: int) -> tuple[str, int, int]:

@@ -31,7 +31,7 @@ from __future__ import annotations
 import os
 from collections.abc import Callable, Mapping, Sequence
 from dataclasses import field
-from functools import cache
+from functools import cache, partial
 from pathlib import Path
 from typing import TYPE_CHECKING
 
@@ -65,7 +65,7 @@ if TYPE_CHECKING:
     from setupcheck.quantities.against import Against
     from setupcheck.quantities.device_record import DeviceRecord
     from setupcheck.quantities.mending import Mended
-    from setupcheck.quantities.own_values import HouseUse, RecordUse
+    from setupcheck.quantities.own_values import HouseRows, HouseUse, RecordUse
     from setupcheck.quantities.remedies import Remedy
     from setupcheck.quantities.teeth_read import TeethRead
     from setupcheck.rulebook.house import House
@@ -207,6 +207,7 @@ def mend(
     """
     from setupcheck.jobfile.editing import Edit, edited  # no review needs them
     from setupcheck.quantities.mending import Judged, mended
+    from setupcheck.quantities.own_values import in_force
 
     own, devices = _read_once(house, devices)
     before = review(job, house=own, on=on, devices=devices)
@@ -221,7 +222,8 @@ def mend(
         )
 
     now = Judged(before.verdict, _counts(before), frozenset((c.op, c.id) for c in before.evaluation.cautions))
-    return before, mended(before.loaded, before.floor, before.results, now, judge, again, of=of)
+    gives = partial(in_force, *_own(devices, own))
+    return before, mended(before.loaded, before.floor, before.results, now, judge, again, gives, of=of)
 
 
 def _counts(found: Review) -> dict[tuple[str, str], int]:
@@ -250,15 +252,21 @@ def with_own(
 
     Raises: JobError with every problem of the record.
     """
-    from setupcheck.quantities.device_record import DeviceRecord, read_record  # few jobs have one
+    from setupcheck.quantities.own_values import with_own as filled  # few jobs have any
+
+    return filled(loaded, *_own(devices, house))
+
+
+def _own(devices: DeviceRecord | str | Path | None, house: House | None) -> tuple[DeviceRecord | None, HouseRows]:
+    """The record that acts and the values of the house file."""
+    from setupcheck.quantities.device_record import DeviceRecord, read_record
     from setupcheck.quantities.own_values import HouseRow, HouseRows
-    from setupcheck.quantities.own_values import with_own as filled
 
     found = read_record(devices) if isinstance(devices, str | Path) else devices
     if found is None and house is not None and isinstance(house.devices, DeviceRecord):
         found = house.devices
     rows = tuple(HouseRow(v.device, v.what, v.value) for v in house.values) if house is not None else ()
-    return filled(loaded, found, HouseRows(house.name if house is not None else "", rows))
+    return found, HouseRows(house.name if house is not None else "", rows)
 
 
 def _read_once(
@@ -304,13 +312,17 @@ def read_house(house: House | str | Path, *, on: str | None = None) -> House:
 
 @record(eq=False)
 class ReadBack:
-    """A division test read back: the job, the teeth it is of, what it says, how that stands to the plan, and its file's name."""
+    """A division test read back: the job, the teeth it is of, what it says, how that stands to the plan, and its file's name.
+
+    house  the house file whose values stand in the plan, if one does
+    """
 
     loaded: LoadedJob
     of: TeethRead
     reduced: Reduced
     against: Against | Open
     file: str
+    house: House | None = None
 
 
 def read_back(
@@ -320,6 +332,8 @@ def read_back(
     of: str | None = None,
     turns_with_work: bool = False,
     instrument: float | None = None,
+    house: House | str | Path | None = None,
+    devices: DeviceRecord | str | Path | None = None,
     progress: Callable[[int], None] | None = None,
 ) -> ReadBack:
     """Reduce the readings of a division test with what the job says of the teeth.
@@ -327,18 +341,23 @@ def read_back(
     of               `part.surface` of the teeth, where the job has more than one;  progress  bytes of the file read so far
     turns_with_work  stations are turns of the work, as for an instrument that rides on it
     instrument       expanded uncertainty of the angle standard, k = 2 [rad]; without it nothing is judged
-    Raises: JobError; SetupcheckError for the readings.
+    house, devices   a shop's house file and its own record of its devices, whose values stand in the plan, as for `review`
+    Raises: JobError; SetupcheckError for the readings; RuleBookError.
     """
     from setupcheck.division.readings import read_test
     from setupcheck.quantities.against import against
     from setupcheck.quantities.teeth_read import reduced, teeth_of
 
     loaded = job if isinstance(job, LoadedJob) else load_job(job)
+    own = read_house(house) if house is not None else None
+    if devices is not None or own is not None:
+        loaded = with_own(loaded, devices, own)[0]
     floor, book = prepare(loaded)
     teeth = teeth_of(floor, of)
     found = read_test(readings, progress=progress)
     test = reduced(found, teeth, turns_with_work=turns_with_work)
-    return ReadBack(loaded, teeth, test, against(book, floor, test, teeth.name, instrument=instrument), found.file)
+    plan = against(book, floor, test, teeth.name, instrument=instrument)
+    return ReadBack(loaded, teeth, test, plan, found.file, own)
 
 
 def _remedies(loaded: LoadedJob, floor: Floor, results: Mapping[str, Result]) -> Mapping[str, Remedy]:

@@ -8,7 +8,8 @@ from typing import Annotated
 
 import typer
 
-from setupcheck.cli.options import Force
+from setupcheck.cli.house import HouseFile, NoHouse, house_of
+from setupcheck.cli.options import Force, Record
 from setupcheck.cli.writing import refuse_place, write_whole
 
 
@@ -16,6 +17,9 @@ def command(
     job: Annotated[Path, typer.Argument(metavar="JOB", help="Job file (YAML).", show_default=False)],
     svg: Annotated[Path | None, typer.Option(help="Write the map to this file.", show_default=False)] = None,
     force: Force = False,
+    house: HouseFile = None,
+    no_house: NoHouse = False,
+    record: Record = None,
 ) -> None:
     """Tell the contact of a worm wheel with its worm from the exact gap, and draw both flanks as a map.
 
@@ -30,10 +34,15 @@ def command(
 
     if svg is not None:
         refuse_place(svg, force=force)
-    found = review(job)
+    found = review(job, house=house_of(job, house, leave=no_house), devices=record)
     the_contact(found)
     if svg is not None:
         write_whole(svg, as_drawing(found), force=force)
-    sys.stdout.write("\n".join(contacts(found)) + "\n")
+    said = [*contacts(found)]
+    if found.house is not None:
+        from setupcheck.report.house import house_line
+
+        said = [*house_line(found.house), "", *said]
+    sys.stdout.write("\n".join(said) + "\n")
     if svg is not None:
         sys.stdout.write(f"\nwritten: {printable(str(svg))}\n")

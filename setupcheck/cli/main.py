@@ -33,7 +33,7 @@ from setupcheck.cli import (  # noqa: E402
     vary,
     working,
 )
-from setupcheck.errors import SetupcheckError  # noqa: E402
+from setupcheck.errors import JobError, SetupcheckError  # noqa: E402
 
 app = typer.Typer(
     name="setupcheck",
@@ -73,7 +73,7 @@ def run() -> None:
     try:
         app()
     except SetupcheckError as wrong:
-        print(wrong, file=sys.stderr)
+        print(wrong.wrapped() if isinstance(wrong, JobError) else wrong, file=sys.stderr)
         sys.exit(2)
     except BrokenPipeError:
         sys.stderr.close()

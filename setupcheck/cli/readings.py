@@ -3,14 +3,18 @@
 # Annotations are evaluated as they stand (no __future__ import): typer would have to compile each of them from its text.
 
 import sys
+from functools import partial
 from pathlib import Path
 from typing import TYPE_CHECKING, Annotated
 
 import typer
 
-from setupcheck.cli.options import AsJson
+from setupcheck.cli.house import HouseFile, NoHouse, house_of
+from setupcheck.cli.options import AsJson, Record
 
 if TYPE_CHECKING:
+    from collections.abc import Callable
+
     from setupcheck.flow import ReadBack
 
 LARGE = 20_000_000
@@ -23,7 +27,7 @@ def command(
         Path | None, typer.Argument(metavar="CSV", help="Readings of the test.", show_default=False)
     ] = None,
     of: Annotated[
-        str | None, typer.Option(help="Teeth or holes, as in wheel.teeth; the mesh's wheel if left out.")
+        str | None, typer.Option(help="Teeth, holes or lines, as in wheel.teeth; the mesh's wheel if left out.")
     ] = None,
     turns_with_work: Annotated[
         bool, typer.Option("--turns-with-work", help="Stations are turns of the work: the instrument rides on it.")
@@ -36,6 +40,9 @@ def command(
         str | None, typer.Option(help="Diameter of a workpiece to tell the range on, as in 200 or 8 in.")
     ] = None,
     as_json: AsJson = False,
+    house: HouseFile = None,
+    no_house: NoHouse = False,
+    record: Record = None,
     template: Annotated[bool, typer.Option("--template", help="Print a CSV to start from and stop.")] = False,
 ) -> None:
     """Reduce the readings of a division test, and set them against the plan: eccentricity, worm, backlash, scatter, owner.
@@ -54,7 +61,10 @@ def command(
     from setupcheck.report.typed import typed_angle, typed_size
 
     sure = typed_angle("--instrument", instrument) if instrument is not None else None
-    found = _read(job, readings, of, turns_with_work=turns_with_work, instrument=sure)
+    from setupcheck.flow import read_back
+
+    read = partial(read_back, job, readings, of=of, turns_with_work=turns_with_work, instrument=sure)
+    found = _read(readings, partial(read, house=house_of(job, house, leave=no_house), devices=record))
     from setupcheck.report.against import verdict
     from setupcheck.report.readings import as_json as in_json
     from setupcheck.report.readings import as_text
@@ -64,25 +74,17 @@ def command(
     raise typer.Exit({"pass": 0, "fail": 3}.get(verdict(found), 1))
 
 
-def _read(job: Path, readings: Path, of: str | None, *, turns_with_work: bool, instrument: float | None) -> "ReadBack":
-    from setupcheck.flow import read_back
-
+def _read(readings: Path, read: "Callable[..., ReadBack]") -> "ReadBack":
+    """The test read back, with a bar where its file is large and somebody looks on."""
     try:
         size = readings.stat().st_size
     except OSError:
         size = 0
     if size < LARGE or not sys.stderr.isatty():
-        return read_back(job, readings, of=of, turns_with_work=turns_with_work, instrument=instrument)
+        return read()
     from rich.console import Console
     from rich.progress import Progress
 
     with Progress(console=Console(stderr=True), transient=True) as bar:
         task = bar.add_task("reading", total=size)
-        return read_back(
-            job,
-            readings,
-            of=of,
-            turns_with_work=turns_with_work,
-            instrument=instrument,
-            progress=lambda done: bar.update(task, completed=done),
-        )
+        return read(progress=lambda done: bar.update(task, completed=done))

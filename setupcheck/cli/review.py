@@ -31,7 +31,7 @@ def command(
 
     Example: setupcheck review jobs/rotator-worm-wheel.yaml
     """
-    from setupcheck.errors import SetupcheckError
+    from setupcheck.errors import JobError, SetupcheckError
 
     if color not in ("auto", "always", "never"):
         raise typer.BadParameter("write auto, always or never", param_hint="--color")
@@ -42,7 +42,7 @@ def command(
             acts = house_of(path, house, leave=no_house)
             code, text = _reviewed(path, as_json=as_json, everything=everything, house=acts, record=record, on=on)
         except SetupcheckError as wrong:
-            print(wrong, file=sys.stderr)
+            print(wrong.wrapped() if isinstance(wrong, JobError) else wrong, file=sys.stderr)
             worst = max(worst, 2)
             continue
         _show(text, colour=not as_json and _wants_colour(color))

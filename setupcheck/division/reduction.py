@@ -375,14 +375,14 @@ def _limits(found: _Found) -> list[str]:
     if found.scatter.uneven is not None and found.scatter.uneven < SURE:
         own = found.scatter.stations / ARCSEC
         said.append(
-            f'stations stray by {own:.1f}" of their own, more than repeats explain: tooth errors, or waves nobody asked for; '
-            "the intervals take them in"
+            f'stations stray by {own:.1f}" of their own, more than repeats explain: places off by themselves, or waves '
+            "nobody asked for; the intervals take them in"
         )
     if found.follows > 0.0:
         said.append("residuals follow each other over time, as an uneven drift does: the intervals are widened for it")
     if found.scatter.repeat is None and found.fit.nu > 0:
         said.append(
-            "no station was read twice in one direction: scatter of a reading and of the teeth cannot be told apart"
+            "no station was read twice in one direction: scatter of a reading and of the places cannot be told apart"
         )
     return said
 

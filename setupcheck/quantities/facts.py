@@ -5,10 +5,11 @@ from __future__ import annotations
 from setupcheck.jobfile.heating import COLDEST, Heat
 from setupcheck.jobfile.models import Flat, Round
 from setupcheck.jobfile.names import Ref
-from setupcheck.jobfile.setups import Join, Setup
+from setupcheck.jobfile.setups import Clock, Join, Setup, Square, Stop
 from setupcheck.quantities.book import Open, Scope
 from setupcheck.quantities.chilling import cold_error
 from setupcheck.quantities.contents import breaks, holds, material_family
+from setupcheck.quantities.devices import DEVICES
 from setupcheck.quantities.joining import heat_error, key_of_error
 from setupcheck.quantities.readings import Reading
 from setupcheck.quantities.requirements import Stack, spoken
@@ -209,14 +210,29 @@ def _called(scope: Scope, field: str) -> str | None:
     if isinstance(node, Stack):
         return node.require.name or f"{node.require.what} at {spoken(node)}" if field == "name" else node.of
     if isinstance(node, HoldEntry):
-        return (
-            node.entry.on if field == "surface" else f"op {scope.op}, {node.step.replace('_', ' ')} on {node.entry.on}"
-        )
+        return node.entry.on if field == "surface" else held_in_words(node)
     if isinstance(node, Reading):
         return node.name
     if isinstance(node, CutEntry):
         return node.name
     return None
+
+
+def held_in_words(node: HoldEntry) -> str:
+    """What is held and what holds it, as causes are called: `hub in four-jaw chuck (four-jaw-A)`, `seat on parallels`.
+
+    A device that the error entry names itself stands behind, where the words do not name it.
+    """
+    entry, given = node.entry, node.error
+    by = getattr(entry, "by", None)
+    if isinstance(entry, Stop | Clock):
+        said = f"the stop on {entry.on}" if isinstance(entry, Stop) else f"the clocking on {entry.on}"
+    elif isinstance(entry, Square):
+        said = f"{entry.on} on {by}" if by else entry.on
+    else:
+        said = f"{entry.on} {DEVICES[entry.by].words}{', second plane' if node.step == 'and_centre' else ''}"
+    own = given.device if given is not None else None
+    return f"{said} ({own})" if own is not None and own != by else said
 
 
 def _ref(floor: Floor, scope: Scope, setup: Setup | None) -> Ref | None:

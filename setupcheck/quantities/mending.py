@@ -16,7 +16,7 @@ from setupcheck.quantities.proposals import Proposal, best_of, worst_of
 from setupcheck.quantities.rehold import reholds
 from setupcheck.quantities.shop import Floor
 from setupcheck.quantities.single_causes import Table, tables
-from setupcheck.quantities.trials import Bench
+from setupcheck.quantities.trials import Bench, Gives
 from setupcheck.quantities.witness import witnesses
 from setupcheck.record import record
 
@@ -57,15 +57,17 @@ def mended(
     now: Judged,
     judge: Callable[[Sequence[Edit]], Judged],
     again: Callable[[LoadedJob], LoadedJob],
+    gives: Gives,
     *,
     of: str | None = None,
 ) -> Mended:
     """All of it.
 
     judge  the whole review of the job with an edit;  again  puts the shop's own record back into a changed job
+    gives  what a device is taken to give, by the shop's own figures where it has any
     Raises: SetupcheckError for a requirement that is not there, or cannot be told.
     """
-    bench = Bench(loaded, floor, results, again)
+    bench = Bench(loaded, floor, results, again, gives)
     _asked(bench, of)
     found = tables(bench, of=of)
     key = worst_of(bench, of)

@@ -15,7 +15,7 @@ from setupcheck.jobfile.setups import Head, Job, Setup
 from setupcheck.quantities.device_record import DeviceRecord, Series
 from setupcheck.quantities.dividing import has_own_errors, typical_errors
 from setupcheck.quantities.route import machine_of
-from setupcheck.quantities.typical import house_name, own_name
+from setupcheck.quantities.typical import house_name, own_name, typical
 from setupcheck.record import record
 
 OF_KEY: Mapping[str, tuple[str, ...]] = {
@@ -106,6 +106,18 @@ def with_own(
     own = {**loaded.own, **filling.own}
     used = RecordUse(found, tuple(filling.uses)) if found is not None else None
     return replace(loaded, job=job, own=own), used, tuple(filling.of_house)
+
+
+def in_force(found: DeviceRecord | None, values: HouseRows, device: str, what: str) -> tuple[float, bool] | None:
+    """What a device that a job does not name yet gives [mm, rad or K by `what`]; whether that is the shop's own figure.
+
+    None where nobody says.  Source: the shop's record, else its house file, else rules/data/typical.yaml.
+    """
+    series = found.of(device, what) if found is not None else None
+    if series is not None and series.limit is not None:
+        return series.limit, True
+    own, usual = values.of(device, what), typical(device, what)
+    return (own.value, True) if own is not None else (usual.value, False) if usual is not None else None
 
 
 def with_record(loaded: LoadedJob, found: DeviceRecord) -> tuple[LoadedJob, RecordUse]:

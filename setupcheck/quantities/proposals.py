@@ -132,9 +132,11 @@ def _finer(bench: Bench, tried: Tried, path: str, reading: float) -> float | Non
         least, largest = span(figure, places, mine, reading, 0.0, low=stack.low, high=stack.high)
         if least == 0.0 and FINEST <= largest < best:
             best = largest
+    if best >= reading:
+        return None
     step = step_of("um", inches=bench.loaded.job.units == "in")
     best = math.floor(best / step + 1e-6) * step
-    return best if FINEST - 1e-9 <= best < reading else None
+    return best if best >= FINEST - 1e-9 else None
 
 
 def dial(value: float, *, inches: bool) -> str:

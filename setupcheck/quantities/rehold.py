@@ -33,17 +33,25 @@ EDGE = 2.0
 
 @record
 class Move:
-    """One hold entry put on another surface: what it is called, and its entry with a reading [mm]."""
+    """One hold entry put on another surface: what it is called, and its entry with a reading [mm].
+
+    device  whose own figure in this shop the idea's reading is: the entry then names it, as a bare number would stand there
+            with nothing behind it
+    """
 
     idea: Idea
     path: str
     value: str
     reading_at: str = ""
+    device: str = ""
 
     def edits(self, reading: float | None, *, inches: bool) -> tuple[Edit, ...]:
         """The edit, with its dial reading filled in."""
-        value = self.value.replace(READING, dial(reading, inches=inches)) if reading is not None else self.value
-        return (Change(self.path, value),)
+        if reading is None:
+            return (Change(self.path, self.value),)
+        own = self.device and reading == self.idea.reading
+        said = f"{{device: {self.device}}}" if own else dial(reading, inches=inches)
+        return (Change(self.path, self.value.replace(READING, said)),)
 
 
 READING = "<reading>"
@@ -62,7 +70,7 @@ def reholds(bench: Bench, key: str) -> Iterator[Proposal]:
     """Every hold on the chain put on every other surface that stands, one entry at a time, then axis and face together."""
     inches = bench.loaded.job.units == "in"
     for setup in holds_on_the_chain(bench, key):
-        centres, squares, stops = moves_of(bench.loaded, setup)
+        centres, squares, stops = moves_of(bench, setup)
         for move in (*centres, *squares, *stops):
             found = offered(bench, key, move.idea, _editor((move,), inches=inches), move.reading_at)
             if found is not None:
@@ -102,9 +110,9 @@ def holds_on_the_chain(bench: Bench, key: str) -> list[Setup]:
     return [s for s in bench.loaded.job.setups if s.hold is not None and s.op in chain and s.op not in gone]
 
 
-def moves_of(loaded: LoadedJob, setup: Setup) -> tuple[list[Move], list[Move], list[Move]]:
+def moves_of(bench: Bench, setup: Setup) -> tuple[list[Move], list[Move], list[Move]]:
     """(other datums for the axis, for the lean, for the length)."""
-    hold = setup.hold
+    loaded, hold = bench.loaded, setup.hold
     assert hold is not None
     mine = cut_in(loaded, setup)
     there = [one for one in standing_before(loaded, setup) if (one.part, one.name) not in mine]
@@ -113,7 +121,7 @@ def moves_of(loaded: LoadedJob, setup: Setup) -> tuple[list[Move], list[Move], l
         [
             move
             for one, node in rounds(there)
-            if node.high - node.low >= SHORT and (move := centre_move(loaded, setup, hold.centre, one, node, part))
+            if node.high - node.low >= SHORT and (move := centre_move(bench, setup, hold.centre, one, node, part))
         ]
         if hold.centre is not None and hold.centre.turned is None
         else []
@@ -125,14 +133,15 @@ def moves_of(loaded: LoadedJob, setup: Setup) -> tuple[list[Move], list[Move], l
 
 
 def centre_move(
-    loaded: LoadedJob, setup: Setup, now: Centre, one: Standing, node: Round, part: str, *, shortly: bool = False
+    bench: Bench, setup: Setup, now: Centre, one: Standing, node: Round, part: str, *, shortly: bool = False
 ) -> Move | None:
     """The axis taken from another cylinder or bore, trued by a dial; or from the same one, where no dial trues it yet.
 
-    The reading is that of the hold as it is where it is trued by a dial already, else the typical one of the device.
+    The reading is that of the hold as it is where it is trued by a dial already, else what the device gives in this shop: the
+    shop's own figure, or the typical one where it has none.
     shortly  only a narrow band, which no jaw holds
     """
-    name = one.called(part)
+    loaded, name = bench.loaded, one.called(part)
     if name == now.on and now.by in DIALLED:
         return None  # it is trued on it already
     _, machine = machine_of(loaded, setup)
@@ -141,16 +150,18 @@ def centre_move(
     by = "four-jaw" if jaws and turned and node.kind == "cylinder" and not shortly else "indicator"
     if now.by in DIALLED and now.by != "four-jaw":
         by = now.by
-    row = typical(by, "runout")
-    own = bound_of(now.runout) if now.by in DIALLED else None
-    reading = own if own is not None else row.value if row is not None else None
+    path = f"setups.{setup.op}.hold.centre"
+    reading = bound_of(now.runout) if now.by in DIALLED else None
+    device = _own_device(loaded, now.runout, f"{path}.runout") if reading is not None else ""
     if reading is None:
-        return None
+        given = bench.gives(by, "runout")
+        if given is None:
+            return None
+        reading, device = given[0], by if given[1] else ""
     height = _height(setup, now, node)
     at = f", at: {in_file(height, loaded)}" if height is not None else ""
-    path = f"setups.{setup.op}.hold.centre"
     idea = Idea("re-hold", setup.op, one.made_at, name, now.on, by, than=now.by, reading=reading)
-    return Move(idea, path, f"{{on: {name}, by: {by}{at}, runout: {READING}}}", f"{path}.runout")
+    return Move(idea, path, f"{{on: {name}, by: {by}{at}, runout: {READING}}}", f"{path}.runout", device)
 
 
 def _height(setup: Setup, now: Centre, node: Round) -> float | None:
@@ -182,7 +193,8 @@ def square_move(loaded: LoadedJob, setup: Setup, one: Standing, node: Flat, part
     by = f", by: {now.by}" if now.by else ""
     value = f"{{on: {name}{by}, face_runout: {READING}, across: {in_file(across, loaded)}}}"
     idea = Idea("square", setup.op, one.made_at, name, now.on, now.by or "", reading=reading)
-    return Move(idea, path, value, f"{path}.face_runout")
+    device = _own_device(loaded, now.face_runout, f"{path}.face_runout")
+    return Move(idea, path, value, f"{path}.face_runout", device)
 
 
 def _stop_move(loaded: LoadedJob, setup: Setup, one: Standing, node: Flat, part: str) -> Move | None:
@@ -208,6 +220,11 @@ def bound_of(given: Deviation | None) -> float | None:
         row = typical(given.device, "runout") or typical(given.device, "face_runout")
         value = row.value if row is not None else None
     return abs(value) if value else None
+
+
+def _own_device(loaded: LoadedJob, given: Deviation | None, path: str) -> str:
+    """The device an entry names, where the shop's own figure of it stands there; "" elsewhere."""
+    return given.device if given is not None and given.device is not None and loaded.owned(path) else ""
 
 
 def in_file(mm: float, loaded: LoadedJob) -> str:

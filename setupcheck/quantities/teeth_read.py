@@ -14,14 +14,23 @@ from setupcheck.quantities.route import machine_of
 from setupcheck.quantities.shop import Floor
 from setupcheck.record import record
 
+CALLED = {
+    "teeth": ("tooth", "teeth"),
+    "holes": ("hole", "holes"),
+    "lines": ("line", "lines"),
+    "slot": ("slot", "slots"),
+}
+"""One of a ring and many, by the kind of its surface."""
+
 
 @record
 class TeethRead:
-    """The teeth or holes of a test.
+    """The teeth, holes or lines of a test.
 
     name  as in `of` of a requirement;  count, radius [mm], pressure_angle [rad], start [rad], turn  as the ledger has them
     worm_ratio  turns of their own worm for one of theirs, else None;  head_ratio  of the head that cut them, else None
-    missing     keys of the job that would tell more;  holes  holes or slots, which have no flanks
+    missing     keys of the job that would tell more;  holes  holes, slots or lines, which have no flanks
+    one, many   what they are called
     Tooth n stands half a pitch on from gap n; start is set back so much for holes, whose number is that of the place itself.
     """
 
@@ -35,6 +44,8 @@ class TeethRead:
     turn: int
     missing: tuple[str, ...]
     holes: bool = False
+    one: str = "tooth"
+    many: str = "teeth"
 
 
 def teeth_of(floor: Floor, of: str | None = None) -> TeethRead:
@@ -54,7 +65,9 @@ def teeth_of(floor: Floor, of: str | None = None) -> TeethRead:
     if name is None:
         if len(known) != 1:
             what = (
-                f"has {', '.join(known)}. Write which one with --of" if known else "divides nothing: no teeth, no holes"
+                f"has {', '.join(known)}. Write which one with --of"
+                if known
+                else "divides nothing: no teeth, holes or lines"
             )
             raise SetupcheckError(f"{file} {what}")
         name = next(iter(known))
@@ -62,7 +75,7 @@ def teeth_of(floor: Floor, of: str | None = None) -> TeethRead:
     name = short[0] if len(short) == 1 else name
     if name not in known:
         near = nearest(name, known)
-        raise SetupcheckError(f"{file} has no teeth or holes '{name}'. " + (f"Did you mean {near}?" if near else
+        raise SetupcheckError(f"{file} has no teeth, holes or lines '{name}'. " + (f"Did you mean {near}?" if near else
                               f"Write one of {', '.join(known)}"))  # fmt: skip
     part, _, surface = name.partition(".")
     states = floor.bodies[part].states.get((part, surface), [])
@@ -86,6 +99,7 @@ def teeth_of(floor: Floor, of: str | None = None) -> TeethRead:
         pattern.turn,
         tuple(missing),
         holes,
+        *CALLED[known[name].kind],
     )
 
 

@@ -18,6 +18,7 @@ from setupcheck.quantities.route import walk
 from setupcheck.quantities.shop import Floor
 from setupcheck.quantities.stacks import build
 from setupcheck.quantities.typed_entry import shown, typed_change
+from setupcheck.quantities.typical import typical
 from setupcheck.record import record
 
 MOST_WALKS = 300
@@ -25,6 +26,14 @@ MOST_WALKS = 300
 TOUCHING = 1e-9
 """Share of its limit by which a stack may seem outside from the noise of sums alone. Source: our choice."""
 GOOD_DATUM = ("made", "stock")
+Gives = Callable[[str, str], tuple[float, bool] | None]
+"""From a device and what is asked of it (`four-jaw`, `runout`) to the value in force [mm, rad or K], and whether that is the
+shop's own figure; None where nobody says."""
+
+
+def _typical(device: str, what: str) -> tuple[float, bool] | None:
+    row = typical(device, what)
+    return (row.value, False) if row is not None else None
 
 
 @record(eq=False)
@@ -46,6 +55,7 @@ class Bench:
     """What trials are held against: the job as it stands.
 
     again    puts the shop's own record back into a changed job, where one is used
+    gives    what a device that the job does not name yet is taken to give, by the shop's own figures where it has any
     results  its stacks by instance;  walks  changed routes walked so far;  met  the most was met
     """
 
@@ -53,6 +63,7 @@ class Bench:
     floor: Floor
     results: Mapping[str, Result]
     again: Callable[[LoadedJob], LoadedJob] = lambda loaded: loaded
+    gives: Gives = _typical
     most: int = MOST_WALKS
     walks: int = 0
     met: bool = False

@@ -73,7 +73,7 @@ def _offered(bench: Bench, key: str, maker: Setup, later: Setup, one: Witness) -
     if isinstance(one.node, Round):
         if hold.centre is None or hold.centre.turned is not None:
             return None
-        move = centre_move(loaded, later, hold.centre, there, one.node, part, shortly=True)
+        move = centre_move(bench, later, hold.centre, there, one.node, part, shortly=True)
     else:
         move = square_move(loaded, later, there, one.node, part)
     if move is None:

@@ -165,7 +165,7 @@ def _move(found: ReadBack, a: Against) -> Iterator[str]:
         unit, digits = _unit(found, stack.unit, stack.digits)
         now, then, most = (show(answer.value * share, unit, digits) for share in (1.0, a.move.then, a.move.most))
         falls.append(f"{stack.require.what} falls from {now} to {then}, at most {most}")
-    those, one = ("Holes", "hole") if found.of.holes else ("Teeth", "tooth")
+    those, one = found.of.many.capitalize(), found.of.one
     yield from wrap(
         f"{those} stand {show(a.move.amount, *fine)} towards {one} {a.move.tooth} off the axis of use, known to "
         f"{show(a.move.within, *fine)}. Put true to it (held again by their pitch circle and bored, the bore then as much "

@@ -71,7 +71,7 @@ def house_as_data(found: Review) -> dict[str, object] | None:
     from setupcheck.report.json import house_head
 
     return {
-        **(house_head(found) or {}),
+        **(house_head(house) or {}),
         "acts": [
             {"rule": rule, "places": places, "says": clean(said)} for (rule, said), places in acts_of(found).items()
         ],

@@ -27,6 +27,7 @@ from setupcheck.rulebook import Finding
 
 if TYPE_CHECKING:
     from setupcheck.flow import Review
+    from setupcheck.rulebook.house import House
 
 FORMAT = 1
 METRIC = {shown: metric for metric, shown in INCH.items()}
@@ -100,9 +101,8 @@ def plain_number(value: float) -> float:
     return float(f"{value:.{DIGITS}g}") + 0.0 if math.isfinite(value) else 0.0
 
 
-def house_head(found: Review) -> dict[str, object] | None:
+def house_head(house: House | None) -> dict[str, object] | None:
     """Which house file acts; None where none does."""
-    house = found.house
     return {"name": clean(house.name), "file": clean(house.file), "sha256": house.sha256} if house is not None else None
 
 

@@ -52,6 +52,10 @@ def _head(found: ReadBack) -> Iterator[str]:
     yield from wrap(
         f"DIVISION TEST of {of.name}, {of.count} places, radius {_size(found, of.radius)}: {clean(found.file)}"
     )
+    if found.house is not None:
+        from setupcheck.report.house import house_line  # few tests have one
+
+        yield from house_line(found.house)
     word = "TOLD" if r.verdict == "told" else "OPEN"
     yield f"{word}   {_many(r.rows, 'reading')}, {_many(r.stations, 'station')}, {_many(r.runs, 'run')}"
     for why in r.reasons:
@@ -86,7 +90,7 @@ def _answers(found: ReadBack) -> Iterator[str]:
         yield from wrap("with the whole pitches taken off", first="  - ", rest="    ")
     e = r.eccentric
     if e is not None:
-        told, place = e.amount.low > 0.0, "hole" if found.of.holes else "tooth"
+        told, place = e.amount.low > 0.0, found.of.one
         by = _fine(found, e.amount) if told or math.isinf(e.amount.high) else f"less than {_one(found, e.amount.high)}"
         text = f"{'as if ' if e.looks in ('division', 'neither') else ''}eccentric by {by}"
         if told and e.within is not None:
@@ -95,7 +99,7 @@ def _answers(found: ReadBack) -> Iterator[str]:
             text += ", towards where is not told"
         yield from wrap(_open(text, "" if e.open in r.reasons else e.open), first="  ", rest="      ")
         if r.apart is not None:
-            two, them = r.apart, "holes" if found.of.holes else "teeth"
+            two, them = r.apart, found.of.many
             yield from wrap(
                 f"taken apart by the flanks: {them} off their axis by {_one(found, two.amount)} ±{_one(found, two.within)} "
                 f"towards {place} {two.tooth}, and dividing {_sec(two.divided)}, highest at {_deg(two.highest)}",
@@ -265,6 +269,7 @@ def as_data(found: ReadBack) -> dict[str, object]:
     e, iso, c = r.eccentric, r.repeatability, r.collimation
     return {
         "format": FORMAT,
+        "house": _house(found),
         "plan": plan_as_data(found),
         "file": printable(found.file),
         "of": of.name,
@@ -309,6 +314,14 @@ def as_data(found: ReadBack) -> dict[str, object]:
         "steps": [{"along": s.along, "size_arcsec": _number(s.size * arc), "from_line": s.line,
                    "station_deg": _number(math.degrees(s.theta))} for s in r.steps],
     }  # fmt: skip
+
+
+def _house(found: ReadBack) -> dict[str, object] | None:
+    if found.house is None:
+        return None
+    from setupcheck.report.json import house_head  # few tests have one
+
+    return house_head(found.house)
 
 
 def _wave_data(w: Wave) -> dict[str, object]:

@@ -34,7 +34,7 @@ def as_data(found: Review, mended: Mended) -> dict[str, object]:
         "format": FORMAT,
         "setupcheck": __version__,
         "rule_book": {"version": found.rulebook.version, "sha256": found.rulebook.sha256},
-        "house": house_head(found),
+        "house": house_head(found.house),
         "job": {"title": clean(loaded.job.title), "file": loaded.file, "sha256": loaded.sha256},
         "verdict": found.verdict,
         "failing": mended.failing,

@@ -281,7 +281,7 @@ def as_data(found: Varied) -> dict[str, object]:
         "format": FORMAT,
         "setupcheck": __version__,
         "rule_book": {"version": found.after.rulebook.version, "sha256": found.after.rulebook.sha256},
-        "house": house_head(found.after),
+        "house": house_head(found.after.house),
         "job": {"title": clean(loaded.job.title), "file": loaded.file, "sha256": loaded.sha256},
         "set": [{"key": clean(one.key), "value": clean(one.value)} for one in found.changes],
         "before": _verdict(found.before),

@@ -81,7 +81,7 @@ FILES: dict[str, tuple[Callable[[Path], object], str]] = {
     ),
     "100 MB": (
         a_hundred_megabytes,
-        "job.yaml: the file has 100.0 MB, more than 2 MB. Name a job file, written as YAML\n",
+        "job.yaml: the file has 100.0 MB, more than 2 MB. Name a job file, written as\n  YAML\n",
     ),
     "1.9 MB of entries": (
         content(lines(70_000, "  - {what: torque, of: 50}\n")),
@@ -99,7 +99,7 @@ FILES: dict[str, tuple[Callable[[Path], object], str]] = {
     "alias bomb": (nine_aliases_of_nine, "  '*a' points to another place of the file. Write the value out here, "),
     "object tag": (
         content(spoilt("title: Ring", "title: !!python/object/apply:os.system Ring").encode()),
-        "  '!!python/object/apply:os.system' is a tag. Leave it away, or put a text in quotes\n",
+        "  '!!python/object/apply:os.system' is a tag. Leave it away, or put a text in\n  quotes\n",
     ),
     "a list": (content(b"- op: 10\n- op: 20\n"), "  a job file is a map of keys. Start with setupcheck: 1\n"),
     "a word": (content(b"lathe\n"), "  a job file is a map of keys. Start with setupcheck: 1\n"),
@@ -110,7 +110,7 @@ FILES: dict[str, tuple[Callable[[Path], object], str]] = {
     ),
     "a bore larger than its cylinder": (
         content(spoilt("diameter: 32 H7", "diameter: 52 H7").encode()),
-        "  a bore of 52 mm leaves nothing of hub, which is 50 mm from 20 mm to 30 mm. Write a smaller bore, or removes: ",
+        "  a bore of 52 mm leaves nothing of hub, which is 50 mm from 20 mm to 30 mm.\n  Write a smaller bore, or removes: ",
     ),
 }  # fmt: skip
 
@@ -124,6 +124,7 @@ def test_a_file_that_is_no_job_gives_one_clear_message_and_leaves_nothing_behind
     assert (2, "") == (done.returncode, done.stdout)
     assert message in done.stderr
     assert "Traceback" not in done.stderr
+    assert [] == [line for line in done.stderr.splitlines() if len(line) > 80 and " | " not in line[:9]]
     assert before == sorted(p.name for p in tmp_path.iterdir())
 
 

@@ -8,7 +8,7 @@ from pathlib import Path
 import pytest
 import yaml
 
-from setupcheck.errors import JobError
+from setupcheck.errors import JobError, Problem
 from setupcheck.jobfile.reading import read_job_text
 from tests.bad_input.ring import RING, refused, spoilt, told
 
@@ -87,3 +87,39 @@ def test_a_long_text_is_quoted_short() -> None:
     wrong = refused(spoilt("machine: head-B", f"machine: {'x' * 5000}"))
     assert f"there is no machine '{'x' * 39}…'" == wrong.problems[0].problem
     assert max(len(line) for line in str(wrong).splitlines()) < 200
+
+
+# -- in a terminal
+
+COMMA = """\
+    30 |       centre: {on: bore, by: spigot, clearance: [1 um, 3,5 um], runout: 3 um}
+       |                                                        ^^^^^^
+  '3,5 um' has a comma between two digits. Write a point for the decimal: 3.5
+  um; or, in a list, a space after the comma: 3, 5 um"""
+
+
+def test_a_terminal_gets_the_message_in_lines_of_eighty_columns_and_the_error_keeps_its_own_text() -> None:
+    wrong = refused(spoilt("clearance: [1 um, 3 um]", "clearance: [1 um, 3,5 um]"))
+    head, *rest = wrong.wrapped().splitlines()
+    assert COMMA.splitlines() == rest and head.endswith("setups.20.hold.centre.clearance[2]")
+    assert str(wrong).splitlines()[:3] == [head, *rest[:2]]
+    assert str(wrong).splitlines()[3:] == [f"  {' '.join(line.strip() for line in rest[2:])}"]
+
+
+@pytest.mark.parametrize("trap", TRAPS, ids=[t["trap"].replace(" ", "-") for t in TRAPS])
+def test_folding_loses_no_word_and_leaves_quoted_lines_whole(trap: dict[str, object]) -> None:
+    wrong = refused(spoilt(str(trap["in place of"]), str(trap["write"])))
+    own, folded = str(wrong).splitlines(), wrong.wrapped().splitlines()
+    assert " ".join(str(wrong).split()) == " ".join(wrong.wrapped().split())
+    assert [line for line in own if " | " in line[:10]] == [line for line in folded if " | " in line[:10]]
+    says = [line for line in folded if " | " not in line[:10] and not line.startswith("job.yaml")]
+    assert max(map(len, says)) <= 80 and all(line.startswith("  ") for line in says)
+
+
+def test_a_name_too_long_to_break_and_an_example_of_several_lines_stay_as_they_are() -> None:
+    name = "a/" * 60 + "job.yaml"
+    example = "Begin with:\n" + "setups: " + "[]" * 50
+    wrong = JobError(name, (), [Problem("", 0, 0, 1, "there is " + "nothing " * 20, example)])
+    told = wrong.wrapped().splitlines()
+    assert name + ":" == told[0] and "    setups: " + "[]" * 50 == told[-1]
+    assert len(told) > 4 and all(len(line) <= 80 and line[:3] == "  " + line.strip()[0] for line in told[1:-1])

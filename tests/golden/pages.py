@@ -125,11 +125,11 @@ def index_table() -> str:
 
 
 def mistakes() -> str:
-    """What the reader says to a file with three mistakes."""
+    """What the command prints for a file with three mistakes."""
     try:
         read_job_text(MISTAKES, "wheel.yaml")
     except JobError as wrong:
-        return str(wrong)
+        return wrong.wrapped()
     raise AssertionError("the mistakes went unnoticed")
 
 

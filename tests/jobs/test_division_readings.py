@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import json
 import math
+import re
 from pathlib import Path
 
 import pytest
@@ -142,3 +143,34 @@ def test_wrong_use_is_told(tmp_path: Path) -> None:
     assert (2, True) == (code, "divides nothing" in told)
     code, told = run(str(WHEEL), str(tmp_path / "none.csv"))
     assert (2, True) == (code, "there is no such file" in told)
+
+
+@pytest.mark.parametrize(
+    ("name", "of", "count", "one", "many"),
+    [
+        ("rotator-worm-wheel", "wheel.teeth", 72, "tooth", "teeth"),
+        ("index-plate", "plate.holes", 24, "hole", "holes"),
+        ("encoder-disc-mount", "disc.lines", 512, "line", "lines"),
+    ],
+)
+def test_places_are_called_what_they_are(name: str, of: str, count: int, one: str, many: str, tmp_path: Path) -> None:
+    """Read on one side alone, off the axis by a plain sine of 30": its first wave has an owner, and the places a name."""
+    lines = ["tooth,run,direction,deviation_arcsec"]
+    for run_ in (1, 2):
+        for n in (*range(1, count + 1, max(1, count // 24)), 1):
+            off = 30.0 * math.sin(math.radians(45.0 - (n - 1) * 360.0 / count)) + 0.2 * ((7 * n + 3 * run_) % 5 - 2)
+            lines.append(f"{n},{run_},forward,{off:.3f}")
+    file = tmp_path / "test.csv"
+    file.write_text("\n".join(lines) + "\n", encoding="utf-8")
+    _, told = run(str(JOBS / f"{name}.yaml"), str(file), "--of", of, "--instrument", "1arcsec")
+    said = " ".join(told.split())
+    assert re.search(rf"high at {one} \d+ \(", said)
+    assert re.search(rf"{many.capitalize()} stand \S+ (um|thou) towards {one} \d+ off the axis of use", said)
+    assert f"as much towards that {one}" in said
+    others = {"tooth", "teeth", "hole", "holes", "lines"} - {one, many}
+    assert set() == others & set(re.findall(r"[a-z]+", said.replace(of, "").lower()))
+
+
+def test_a_ring_that_is_not_there_names_all_three(tmp_path: Path) -> None:
+    code, told = run(str(JOBS / "encoder-disc-mount.yaml"), str(tmp_path / "no.csv"), "--of", "disc.nothing")
+    assert code == 2 and "has no teeth, holes or lines 'disc.nothing'" in told and "disc.lines" in told

@@ -9,6 +9,7 @@ from setupcheck.flow import Review, review
 from setupcheck.jobfile.reading import read_job_text
 from setupcheck.report.text import as_text
 from setupcheck.rulebook import Finding
+from setupcheck.shipped import example
 from tests.jobs.remedy_jobs import held_twice
 
 DISC = """
@@ -328,3 +329,38 @@ def test_nothing_of_it_says_a_promise() -> None:
     text = as_text(reviewed((SOFT, f"{SOFT}, jaws_stand_out: 8 mm"), turning("speed: 3000 rpm, chuck_speed: 2500 rpm")))
     assert "jaws-protrude" in text or "Jaws that stand out beyond the chuck" in text
     assert "op 20, chuck-speed [to check]" in text
+
+
+# -- HOLD-004
+
+
+@pytest.mark.parametrize(
+    ("was", "becomes", "called"),
+    [
+        (FOUR_JAW, "by: four-jaw, at: 10, runout: {device: four-jaw}", "rim in four-jaw chuck"),
+        (FOUR_JAW, "by: four-jaw, at: 10, runout: {device: four-jaw-A}", "rim in four-jaw chuck (four-jaw-A)"),
+        (SQUARE, SQUARE.replace("15 um", "{device: jaws}"), "face on jaws"),
+        (SQUARE, SQUARE.replace("by: jaws, face_runout: 15 um", "face_runout: {device: table}"), "face (table)"),
+        (
+            SQUARE,
+            "      and_centre: {on: rim, by: four-jaw, at: 30, runout: {device: four-jaw}}\n    cut: {front",
+            "rim in four-jaw chuck, second plane",
+        ),
+        (
+            SQUARE,
+            SQUARE.replace("    cut: {", "      stop: {on: face, error: {device: lever-2um}}\n    cut: {"),
+            "the stop on face (lever-2um)",
+        ),
+    ],
+)
+def test_a_typical_error_is_told_with_what_is_held_and_what_holds_it(was: str, becomes: str, called: str) -> None:
+    told = [f.message for f in found("HOLD-004", reviewed((was, becomes))) if f.verdict == "warn"]
+    assert [f"op 10 rests on a typical error for {called}, not on a figure of this shop"] == told
+
+
+def test_a_joint_trued_by_a_dial_is_told_with_its_dial() -> None:
+    text = example("encoder-disc-mount").read_text(encoding="utf-8")
+    trued = "runout: {at_most: 2 um, measured: 1.2 um, uncertainty: 0.4 um, indicator: 0.5 um}"
+    seen = reviewed((trued, "runout: {device: indicator}"), text=text)
+    told = [f.message for f in found("HOLD-004", seen) if f.verdict == "warn"]
+    assert ["op 40 rests on a typical error for disc.track trued by indicator, not on a figure of this shop"] == told
