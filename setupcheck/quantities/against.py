@@ -99,8 +99,9 @@ class Against:
 
 
 def asked(book: Book, floor: Floor, of: str) -> list[Scope]:
-    """The requirements of these teeth that a division test answers, best first."""
-    scopes = [s for s in book.instances("stack") if stack_of(s).require.what in INDEX]
+    """The requirements of these teeth that a division test answers, best first: not what only the mean of several heads must meet."""
+    requires = ((s, stack_of(s).require) for s in book.instances("stack"))
+    scopes = [s for s, require in requires if require.what in INDEX and (require.heads or 1) == 1]
     mine = [s for s in scopes if str(replace(floor.loaded.ref(stack_of(s).of), op=None)) == of]
     return sorted(mine, key=lambda s: INDEX.index(stack_of(s).require.what))
 
@@ -113,7 +114,9 @@ def against(book: Book, floor: Floor, test: Reduced, of: str, *, instrument: flo
     """
     scopes = asked(book, floor, of)
     if not scopes:
-        return Open(because=f"no index or pitch figure of {of} is required: write one, as in what: index-within")
+        return Open(
+            because=f"no index or pitch figure of {of} is required as one head reads it: write one, as in what: index-within"
+        )
     found = [(scope, book.get("stack.combined", scope)) for scope in scopes]
     known = [(s, a.value) for s, a in found if isinstance(a, Known) and isinstance(a.value, Result)]
     if not known:

@@ -12,13 +12,13 @@ from pathlib import Path
 import numpy as np
 import pytest
 
-from setupcheck.flow import ReadBack, read_back
+from setupcheck.flow import ReadBack, read_back, review
 from setupcheck.jobfile.reading import read_job_text
 from setupcheck.ledger.causes import Cause
 from setupcheck.ledger.route import Pattern
 from setupcheck.ledger.running import AsItRuns
 from setupcheck.ledger.teeth import angles, folded
-from setupcheck.quantities.against import Against, _as_slow, owner
+from setupcheck.quantities.against import Against, _as_slow, asked, owner, stack_of
 from setupcheck.report.against import verdict
 from setupcheck.report.readings import as_data, as_text
 from setupcheck.shipped import shipped
@@ -156,7 +156,7 @@ def test_a_job_without_such_a_requirement_is_told_what_to_write(tmp_path: Path) 
     )  # fmt: skip
     found = read_back(read_job_text(text, "job.yaml"), written(tmp_path, e=0.003))
     assert "open" == verdict(found)
-    assert "no index or pitch figure of wheel.teeth is required" in said(found)
+    assert "no index or pitch figure of wheel.teeth is required as one head reads it" in said(found)
 
 
 def test_the_command_ends_with_the_verdict_and_json_has_the_plan(tmp_path: Path) -> None:
@@ -346,3 +346,10 @@ def test_an_eccentric_ring_and_a_division_error_together_are_taken_apart(tmp_pat
         inside += abs(two.amount - 0.010) <= two.within
     assert inside >= 17
     assert "taken apart by the flanks: teeth off their axis by" in said(found)
+
+
+def test_a_requirement_on_the_mean_of_heads_is_not_judged_by_a_test_through_one() -> None:
+    found = review(read_job_text(shipped("jobs/encoder-disc-mount.yaml").read_text("utf-8"), "job.yaml"))
+    heads = [r.heads or 1 for r in found.loaded.job.require if r.what == "index-within"]
+    assert 2 in heads and 1 in heads
+    assert [1] == [stack_of(scope).require.heads or 1 for scope in asked(found.book, found.floor, "disc.lines")]
