@@ -99,7 +99,7 @@ class Against:
 
 
 def asked(book: Book, floor: Floor, of: str) -> list[Scope]:
-    """The requirements of these teeth that a division test answers, best first: not what only the mean of several heads must meet."""
+    """The requirements of these teeth that a division test answers, best first; none that the mean of several heads must meet."""
     requires = ((s, stack_of(s).require) for s in book.instances("stack"))
     scopes = [s for s, require in requires if require.what in INDEX and (require.heads or 1) == 1]
     mine = [s for s in scopes if str(replace(floor.loaded.ref(stack_of(s).of), op=None)) == of]
