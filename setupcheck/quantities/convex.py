@@ -5,7 +5,7 @@ from __future__ import annotations
 import math
 from collections.abc import Callable
 
-CLOSE = 1e-12
+CLOSE = 1e-10
 """A search ends this far from the end it looks for. Source: our choice."""
 STEPS = 60
 """Most steps of one search. Source: our choice."""
