@@ -80,6 +80,14 @@ def overlays() -> tuple[Overlay, ...]:
     return tuple(found)
 
 
+@cache
+def unreached() -> Mapping[str, str]:
+    """Rules that no overlay expects, and why."""
+    rows = _read("unreached.yaml")["unreached"]
+    assert isinstance(rows, dict)
+    return {rule: str(why) for rule, why in rows.items()}
+
+
 def changes_where(patterns: str, key: str) -> bool:
     """Does a change of an entry, or of one around or inside it, fall under a path pattern of a slip?"""
     return any(_under(pattern, key) for pattern in patterns.split(" or "))

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections import Counter
 from functools import cache
+from pathlib import Path
 
 import pytest
 
@@ -30,6 +31,12 @@ def test_the_slips_are_caught_by_the_rules_they_deserve() -> None:
 
 def test_what_is_missed_altogether_is_rare() -> None:
     assert sum(one.how == MISSED for one in caught()) <= 0.01 * len(caught())
+
+
+def test_the_readme_tells_the_figure_of_today() -> None:
+    right, judged = sum(one.how == RIGHT for one in caught()), sum(one.how != WAITS for one in caught())
+    readme = (Path(__file__).parents[2] / "README.md").read_text(encoding="utf-8")
+    assert f"catches {right} of {judged}, with no false alarm" in readme
 
 
 def test_the_good_jobs_set_nothing_off() -> None:

@@ -56,6 +56,7 @@ FLAME, PLATE, COIL, OIL = (("by: oven", f"by: {way}") for way in ("flame", "hot-
 DEGREASED = ("joint: oiled", "joint: degreased")
 NO_JOINT = ("joint: oiled, ", "")
 PRESSED = ("by: shrink, joint: oiled, heat: {hub: 150 degC, by: oven}", "by: press, joint: oiled")
+GLUED, SCREWED = ((PRESSED[0], f"by: {way}") for way in ("bond", "screw"))
 GRINDER, HEAD, MILL = (("{kind: lathe,", f"{{kind: {kind},") for kind in ("grinder", "dividing-head", "mill"))
 WHEEL_TOOL, BROACH = (("{kind: single-point}", f"{{kind: {kind}}}") for kind in ("grinding-wheel", "broach"))
 NO_FACES = (
@@ -151,6 +152,8 @@ SET_OFF: Mapping[str, tuple[int, Changes, Changes]] = {
     "cold-brittle-steel": (20, (cold("dry-ice"),), (cold("dry-ice"), BRONZE_SHAFT)),
     "hub-burst": (20, (IRON,), (HARDENED_SHAFT,)),
     "brittle-in-press": (20, (PRESSED, HARDENED_SHAFT), (PRESSED,)),
+    "uncured-adhesive": (20, (GLUED,), (SCREWED,)),
+    "adhesive-parted-by-heat": (20, (GLUED,), (SCREWED,)),
 }  # fmt: skip
 """Caution: its operation, what sets it off, and a job as near to that as can be which does not."""
 

@@ -233,6 +233,8 @@ OPERATIONS = {
     "pressing into a blind bore": (
         {"setup.kind": "join", "join.by": "press", "hub.may_trap": True},
         ["sealed-cavity-press", "press-force", "press-stand-clear"]),
+    "gluing on": ({"setup.kind": "join", "join.by": "bond"}, ["uncured-adhesive", "adhesive-parted-by-heat"]),
+    "screwing on": ({"setup.kind": "join", "join.by": "screw"}, []),
     "sliding on": ({"setup.kind": "join", "join.by": "slide"}, []),
 }  # fmt: skip
 
