@@ -8,11 +8,12 @@ from typing import TYPE_CHECKING
 
 from setupcheck.errors import cells, printable
 from setupcheck.record import record
-from setupcheck.report.wording import WIDTH
 
 if TYPE_CHECKING:
     from setupcheck.flow import Review
 
+WIDTH = 80
+"""As everywhere in the reports; said again, as a command that leaves the reviews to its workers loads nothing of them."""
 WORST_FIRST = ("unreadable", "fail", "open", "warn", "pass")
 _VERDICT = max(map(len, WORST_FIRST))
 _WIDEST_FILE = 32

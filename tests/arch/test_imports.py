@@ -165,3 +165,7 @@ def test_a_review_to_a_pipe_loads_nothing_it_does_not_need() -> None:
 
 def test_the_facade_is_light_until_it_is_used() -> None:
     assert not loaded_by("import setupcheck") & {"numpy", "pydantic", "yaml", "setupcheck.flow"}
+
+
+def test_a_command_that_leaves_its_jobs_to_workers_loads_nothing_of_a_review() -> None:
+    assert not loaded_by("import setupcheck.cli.many") & {"numpy", "pydantic", "yaml", "setupcheck.flow", "rich.console"}

@@ -74,7 +74,9 @@ def test_of_a_drawer_every_job_gets_a_line_worst_first_and_the_counts_close_it(d
 
 def test_long_names_and_wide_letters_keep_the_width(tmp_path: Path) -> None:
     from setupcheck.errors import cells
+    from setupcheck.report import summary, wording
 
+    assert 80 == summary.WIDTH == wording.WIDTH
     deep = tmp_path / ("a" * 60)
     deep.mkdir()
     (deep / ("\u6b6f" * 30 + ".yaml")).write_text(RING)

@@ -104,6 +104,7 @@ def test_json_has_format_1_and_the_keys_that_were_promised(job: Path) -> None:
         "findings",
         "cautions",
         "not_computed",
+        "taken",
     ] == list(data)
     assert data["format"] == 1
     assert {"title", "file", "sha256"} == set(data["job"])
