@@ -22,6 +22,12 @@ What if an entry of the file were another, said by its path; the file stays as i
 >>> tried.before.verdict, tried.after.verdict
 ('pass', 'fail')
 
+A whole drawer of jobs: one that cannot be read never stops the rest, and any `concurrent.futures.Executor` does the work:
+
+>>> from setupcheck import review_many
+>>> [one.verdict for one in review_many([example("index-plate"), "no-such-job.yaml"])]
+['pass', 'unreadable']
+
 `as_records` is what `setupcheck review --json` prints, as plain dicts and lists:
 
 >>> records = as_records(found)
@@ -47,6 +53,7 @@ if TYPE_CHECKING:
     from setupcheck.flow import ReadBack, Review, Varied, load_job, read_back, review, vary
     from setupcheck.jobfile.changing import Change
     from setupcheck.jobfile.reading import LoadedJob
+    from setupcheck.many import Reviewed, review_many
     from setupcheck.quantities.gates import Gate
     from setupcheck.quantities.judged import Result
     from setupcheck.report.json import as_data as as_records
@@ -65,6 +72,7 @@ __all__ = [
     "ReadBack",
     "Result",
     "Review",
+    "Reviewed",
     "RuleBookError",
     "SetupcheckError",
     "Varied",
@@ -74,6 +82,7 @@ __all__ = [
     "load_job",
     "read_back",
     "review",
+    "review_many",
     "vary",
 ]
 
@@ -82,6 +91,7 @@ _BEHIND = {
     "flow": ("ReadBack", "Review", "Varied", "load_job", "read_back", "review", "vary"),
     "jobfile.changing": ("Change",),
     "jobfile.reading": ("LoadedJob",),
+    "many": ("Reviewed", "review_many"),
     "quantities.gates": ("Gate",),
     "quantities.judged": ("Result",),
     "rulebook": ("Caution", "Finding"),

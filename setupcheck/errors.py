@@ -165,7 +165,7 @@ def _shown(problem: Problem, file: str, lines: Sequence[str], width: int | None)
     text, start, length = _window(lines[problem.line - 1].rstrip("\r\n"), problem.column - 1, problem.length)
     number = f"{problem.line:>6}"
     blank = " " * len(number)
-    under = " " * _width(text[:start]) + "^" * max(1, _width(text[start : start + length]))
+    under = " " * cells(text[:start]) + "^" * max(1, cells(text[start : start + length]))
     return f"{head}\n{number} | {text}\n{blank} | {under}\n{says}"
 
 
@@ -180,7 +180,7 @@ def _window(line: str, start: int, length: int) -> tuple[str, int, int]:
     return front + text + back, start - first + len(front), min(length, WIDEST_LINE - (start - first))
 
 
-def _width(text: str) -> int:
+def cells(text: str) -> int:
     """Cells that a text takes in a terminal: wide letters two, combining marks none."""
     if text.isascii():
         return len(text)

@@ -29,17 +29,19 @@ Gates are what the dial may show at each hold, with all else as planned [mm]:
 from __future__ import annotations
 
 import os
+from collections import deque
 from collections.abc import Callable, Mapping, Sequence
 from dataclasses import field
 from functools import cache, partial
 from pathlib import Path
 from typing import TYPE_CHECKING
+from weakref import ref
 
 from setupcheck.jobfile.reading import LoadedJob, read_job
 from setupcheck.quantities.book import Book, Known, Open, Scope
 from setupcheck.quantities.facts import UnknownFact, facts_of
 from setupcheck.quantities.gates import Gate, gates
-from setupcheck.quantities.judged import Result
+from setupcheck.quantities.judged import Result, forget_draws
 from setupcheck.quantities.route import walk
 from setupcheck.quantities.scopes import scopes
 from setupcheck.quantities.shop import Floor
@@ -140,6 +142,7 @@ def review(
 
     found = evaluate(book_of_rules, book, facts, house=own, waivers=_waivers(loaded), answers=_answers(loaded), on=on)
     results = stack_results(book)
+    _let_go_of_older(book)
     return Review(
         loaded,
         floor,
@@ -155,6 +158,20 @@ def review(
         uses,
         of_house,
     )
+
+
+DRAWS_KEPT = 2
+"""Reviews whose random values stay in memory, as a change is held against what was before it. Source: our choice."""
+_drawn: deque[ref[Book]] = deque()
+
+
+def _let_go_of_older(book: Book) -> None:
+    """The random values of earlier reviews, 10 MB each, go: a list of reviews would fill the memory with what is seldom asked."""
+    _drawn.append(ref(book))
+    while len(_drawn) > DRAWS_KEPT:
+        older = _drawn.popleft()()
+        if older is not None:
+            forget_draws(older.made.values())
 
 
 @record(eq=False)
@@ -269,14 +286,22 @@ def _own(devices: DeviceRecord | str | Path | None, house: House | None) -> tupl
     return found, HouseRows(house.name if house is not None else "", rows)
 
 
+def read_devices(path: str | Path) -> DeviceRecord:
+    """A shop's record of its devices, for whoever reviews many times.
+
+    Raises: JobError with every problem of the record.
+    """
+    from setupcheck.quantities.device_record import read_record
+
+    return read_record(path)
+
+
 def _read_once(
     house: House | str | Path | None, devices: DeviceRecord | str | Path | None
 ) -> tuple[House | None, DeviceRecord | None]:
     """House file and record as read, for whoever reviews many times."""
     if isinstance(devices, str | Path):
-        from setupcheck.quantities.device_record import read_record
-
-        devices = read_record(devices)
+        devices = read_devices(devices)
     return read_house(house) if house is not None else None, devices
 
 

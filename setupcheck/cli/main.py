@@ -42,7 +42,7 @@ app = typer.Typer(
     add_completion=True,
     pretty_exceptions_enable=False,
     help="Check the setups of one precise part before the first chip: what every holding adds, and whether it is too much.",
-    epilog="Exit: 0 pass, 1 warn or open, 2 wrong use or unreadable job, 3 fail.",
+    epilog="Exit: 0 pass, 1 warn or open, 2 wrong use or unreadable job, 3 fail; of many jobs the highest, 130 after Ctrl-C.",
 )
 app.command("review")(review.command)
 app.command("new", cls=new.Command)(new.command)

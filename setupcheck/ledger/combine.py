@@ -41,6 +41,11 @@ class Draws:
         self._radials: dict[int, tuple[Pattern, Reals]] = {}
         self.memo: dict[object, Reals] = {}
 
+    def forget(self) -> None:
+        """Lets go of all values: whoever asks again gets the same ones, drawn anew from their streams."""
+        for held in (self._causes, self._arcs, self._radials, self.memo):
+            held.clear()
+
     @staticmethod
     def stream(name: str) -> np.random.Generator:
         """The stream of random numbers that belongs to a name, the same on every machine."""
@@ -119,13 +124,14 @@ class Draws:
         known = {push.cause.identity: push.cause for push in theirs.pushes()}
         for push in mine.pushes():
             other = known.get(push.cause.identity)
-            if other is not None and _alike(push.cause, other) and other in source._causes:
-                self._causes.setdefault(push.cause, source._causes[other])
+            drawn = source._causes.get(other) if other is not None and _alike(push.cause, other) else None
+            if drawn is not None:
+                self._causes.setdefault(push.cause, drawn)
         ours, given = getattr(mine, "pattern", None), getattr(theirs, "pattern", None)
         if isinstance(ours, Pattern) and isinstance(given, Pattern) and _divided_alike(ours, given):
-            for held, drawn in ((self._arcs, source._arcs), (self._radials, source._radials)):
-                if id(given) in drawn:
-                    held.setdefault(id(ours), (ours, drawn[id(given)][1]))
+            for held, theirs_of in ((self._arcs, source._arcs), (self._radials, source._radials)):
+                if (kept := theirs_of.get(id(given))) is not None:
+                    held.setdefault(id(ours), (ours, kept[1]))
 
     def scatter(self, scatter: Scatter, pattern: Pattern, *, outward: bool = False) -> Reals:
         """Per-place values of one scatter as lengths [mm], uniform within its bound, shape (trials, count).

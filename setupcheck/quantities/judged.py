@@ -2,12 +2,13 @@
 
 from __future__ import annotations
 
+from collections.abc import Iterable
 from dataclasses import replace
 
 from setupcheck.jobfile.reading import LoadedJob
 from setupcheck.ledger.combine import Combined, Draws, Ends, combine
 from setupcheck.ledger.figures import Figure
-from setupcheck.quantities.book import Known, Open
+from setupcheck.quantities.book import Answer, Known, Open
 from setupcheck.quantities.relations import Built
 from setupcheck.quantities.requirements import Stack
 from setupcheck.quantities.scopes import CutEntry
@@ -57,6 +58,16 @@ def floor(floor: Floor) -> Floor:
 def draws() -> Draws:
     """Random values of all causes, one stream per cause. Source: JCGM 101:2008."""
     return Draws()
+
+
+def forget_draws(answers: Iterable[Answer]) -> None:
+    """Lets go of the random values behind answers, several MB of a job; the answers stay, and values drawn again are the same."""
+    for answer in list(answers):
+        value = answer.value if isinstance(answer, Known) else None
+        if not isinstance(value, Draws):
+            value = getattr(value, "draws", None)  # of the plan beside what was measured
+        if isinstance(value, Draws):
+            value.forget()
 
 
 def requirements(floor: Floor) -> float:

@@ -30,8 +30,9 @@ MAY_IMPORT: dict[str, set[str]] = {
     "flow": {"division", "jobfile", "quantities", "rulebook", "shipped"},
     "report": {"errors", "notation", "ledger", "division", "jobfile", "quantities", "rulebook", "flow", ""},
     "starting": {"errors", "notation", "shipped", "division", "worm", "jobfile", "quantities", "rulebook", "flow"},
-    "cli": {"errors", "flow", "report", "rulebook", "starting", ""},
-    "": {"errors", "flow", "jobfile", "quantities", "report", "rulebook", "shipped"},
+    "many": {"errors", "flow", "report"},
+    "cli": {"errors", "flow", "many", "report", "rulebook", "starting", ""},
+    "": {"errors", "flow", "jobfile", "many", "quantities", "report", "rulebook", "shipped"},
     "__main__": {"cli"},
 }
 """Package -> the packages of ours it may import; "" is setupcheck/__init__.py (the version and the facade)."""
@@ -128,6 +129,11 @@ def test_a_review_to_a_pipe_loads_nothing_it_does_not_need() -> None:
         "scipy",
         "jinja2",
         "rich.console",
+        "concurrent.futures",
+        "multiprocessing",
+        "setupcheck.many",
+        "setupcheck.cli.many",
+        "setupcheck.report.summary",
         "setupcheck.rulebook.describe",
         "setupcheck.report.working",
         "setupcheck.report.json",
@@ -159,3 +165,7 @@ def test_a_review_to_a_pipe_loads_nothing_it_does_not_need() -> None:
 
 def test_the_facade_is_light_until_it_is_used() -> None:
     assert not loaded_by("import setupcheck") & {"numpy", "pydantic", "yaml", "setupcheck.flow"}
+
+
+def test_a_command_that_leaves_its_jobs_to_workers_loads_nothing_of_a_review() -> None:
+    assert not loaded_by("import setupcheck.cli.many") & {"numpy", "pydantic", "yaml", "setupcheck.flow", "rich.console"}

@@ -55,7 +55,7 @@ def content(raw: bytes) -> Callable[[Path], object]:
 
 FILES: dict[str, tuple[Callable[[Path], object], str]] = {
     "missing": (lambda path: None, "job.yaml: there is no such file. Check the name and the directory\n"),
-    "directory": (lambda path: path.mkdir(), "job.yaml: this is a directory. Name a file in it\n"),
+    "directory": (lambda path: path.mkdir(), "job.yaml: there is no job here, no *.yaml or "),
     "empty": (
         content(b""),
         f"job.yaml: the file is empty. {BEGIN}\n",
@@ -169,7 +169,8 @@ def test_a_bad_file_among_good_ones_is_told_and_the_good_ones_are_judged_all_the
     (tmp_path / "bad.yaml").write_text(spoilt("count: 60", "count: 0"))
     done = command("review", "bad.yaml", "good.yaml", "missing.yaml", at=tmp_path)
     assert 2 == done.returncode
-    assert "Ring gear blank" == done.stdout.splitlines()[0]
+    said = [(line.split()[0], line.split()[-1]) for line in done.stdout.splitlines()[:3]]
+    assert [("unreadable", "bad.yaml"), ("unreadable", "missing.yaml"), ("open", "good.yaml")] == said
     assert ["bad.yaml:14:35  parts.ring.surfaces.teeth.count"] == done.stderr.splitlines()[:1]
     assert "missing.yaml: there is no such file. Check the name and the directory" == done.stderr.splitlines()[-1]
 

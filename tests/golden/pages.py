@@ -17,6 +17,7 @@ from setupcheck.jobfile.reading import read_job_text
 from setupcheck.report.index_table import as_index_table
 from setupcheck.report.pictures import pictures
 from setupcheck.report.remedy import as_text as remedy_as_text
+from setupcheck.report.summary import Line, summary, told_of
 from setupcheck.report.text import as_text
 from setupcheck.report.vary import as_text as varied_as_text
 from setupcheck.report.vary_drawing import as_drawing
@@ -110,6 +111,16 @@ def remedied(job: str) -> str:
 
 
 @cache
+def drawer() -> list[str]:
+    """All shipped jobs in a line each, mistakes and all."""
+    lines = []
+    for path in sorted((ROOT / "jobs" / "mistakes").glob("*.yaml")) + sorted((ROOT / "jobs").glob("*.yaml")):
+        found = review(path)
+        lines.append(Line(path.relative_to(ROOT).as_posix(), found.verdict, told_of(found)))
+    return summary(lines)
+
+
+@cache
 def swept() -> Swept:
     """The same over a range."""
     before = review(ROOT / "jobs" / "rotator-worm-wheel.yaml")
@@ -161,6 +172,8 @@ def excerpts() -> dict[str, str]:
     table = reports()["index-table.txt"].splitlines()
     what_if = reports()["vary.txt"].splitlines()
     range_of = reports()["vary-range.txt"].splitlines()
+    many = drawer()
+    passed = first_of("pass", many)
     would_do = reports()["remedy.txt"].splitlines()
     outside = first_of("OUTSIDE", would_do)
     moved = first_of("WHAT WAS ASKED", what_if)
@@ -175,6 +188,7 @@ def excerpts() -> dict[str, str]:
         "index": "\n".join([*table[2:26], "  …", *table[-5:]]),
         "vary": "\n".join([*what_if[1:15], "  …", *what_if[moved - 1 : moved + 5], "  …"]),
         "vary-range": "\n".join([*range_of[1 : first_of("WHAT WAS ASKED", range_of) - 1], "  …"]),
+        "drawer": "\n".join([*many[:2], "…", *many[passed : passed + 2], "…", *many[-2:]]),
         "remedy": "\n".join([*would_do[1 : outside + 8], "  …"]),
         "slips": slips(),
         "mistakes": mistakes(),

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import json
+import os
 import re
 import subprocess
 import sys
@@ -30,6 +31,21 @@ def test_the_example_of_the_readme_prints_what_the_readme_says() -> None:
         [sys.executable, "-c", fenced("python")], capture_output=True, text=True, check=True, cwd=ROOT, encoding="utf-8"
     )
     assert fenced("python prints") == run.stdout.replace(f"{ROOT}/", "")
+
+
+def test_the_example_of_many_jobs_prints_what_the_readme_says(tmp_path: Path) -> None:
+    script = tmp_path / "many.py"
+    script.write_text(fenced("python many"), encoding="utf-8")
+    run = subprocess.run(
+        [sys.executable, str(script)],
+        capture_output=True,
+        text=True,
+        check=True,
+        cwd=ROOT,
+        env=os.environ | {"PYTHONPATH": str(ROOT)},
+        encoding="utf-8",
+    )
+    assert fenced("python many prints") == run.stdout
 
 
 def test_the_facade_offers_all_it_says() -> None:
