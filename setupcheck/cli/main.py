@@ -30,6 +30,7 @@ from setupcheck.cli import (  # noqa: E402
     rules,
     schema,
     sheet,
+    streams,
     vary,
     working,
 )
@@ -70,6 +71,7 @@ def options(version: bool = typer.Option(False, "--version", help="Print the ver
 
 def run() -> None:
     """Run the command inside a process that goes on, or that wants to end in the usual way."""
+    streams.settle()
     try:
         app()
     except SetupcheckError as wrong:
