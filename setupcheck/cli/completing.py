@@ -65,11 +65,11 @@ def kinds(incomplete: str) -> list[Offer]:
     return [(kind.name, kind.says) for kind in KINDS.values() if kind.name.startswith(incomplete)]
 
 
-def examples(incomplete: str) -> list[str]:
-    """Names of the shipped jobs."""
-    from setupcheck.shipped import examples as shipped_jobs
+def examples(incomplete: str) -> list[Offer]:
+    """Names of the shipped jobs, each with its title."""
+    from setupcheck.starting.copying import listed
 
-    return [name for name in shipped_jobs() if name.startswith(incomplete)]
+    return [(name, title) for name, title in listed() if name.startswith(incomplete)]
 
 
 def _of(*words: str) -> Callable[[str], list[str]]:

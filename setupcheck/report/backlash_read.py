@@ -13,7 +13,7 @@ from setupcheck.report.wording import clean, wrap
 from setupcheck.report.worked_out import filled
 
 if TYPE_CHECKING:
-    from setupcheck.report.review_types import BacklashReadData
+    from setupcheck.report.review_blocks import BacklashReadData
 
 SENTENCES = (
     "from {read.least} to {read.largest}, mean {read.mean}, one reading is known to ± {read.uncertainty}",

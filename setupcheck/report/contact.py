@@ -17,7 +17,7 @@ from setupcheck.report.wording import clean, wrap
 if TYPE_CHECKING:
     import numpy as np
 
-    from setupcheck.report.review_types import ContactData
+    from setupcheck.report.review_blocks import ContactData
 
 ROWS, COLUMNS = 9, 33
 """Characters of a map; two of them and their margin make 77."""

@@ -11,7 +11,7 @@ from setupcheck.report.joint import fitted, has_play, in_words
 from setupcheck.report.wording import wrap
 
 if TYPE_CHECKING:
-    from setupcheck.report.review_types import HeatingPlanData
+    from setupcheck.report.review_blocks import HeatingPlanData
 
 STEPS: tuple[tuple[str, ...], ...] = (
     (

@@ -12,7 +12,7 @@ from setupcheck.rulebook.house import House, HouseValue
 
 if TYPE_CHECKING:
     from setupcheck.flow import Review
-    from setupcheck.report.review_types import HouseData
+    from setupcheck.report.review_blocks import HouseData
 
 SHOWN_SHA = 12
 """Characters of the sha256 that are printed; JSON has all of them. Source: our choice."""

@@ -16,7 +16,7 @@ from setupcheck.report.joint import in_words
 from setupcheck.report.wording import clean, wrap
 
 if TYPE_CHECKING:
-    from setupcheck.report.review_types import InsertData
+    from setupcheck.report.review_blocks import InsertData
 
 SHAPE: tuple[tuple[str, ...], ...] = (
     (

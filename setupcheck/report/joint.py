@@ -14,7 +14,7 @@ from setupcheck.report.wording import wrap
 from setupcheck.report.worked_out import filled
 
 if TYPE_CHECKING:
-    from setupcheck.report.review_types import JointData
+    from setupcheck.report.review_blocks import JointData
 
 LABEL, CELL = 24, 9
 """Widths of the table's columns; all of them make 78."""

@@ -27,12 +27,11 @@ from setupcheck.rulebook import Finding
 
 if TYPE_CHECKING:
     from setupcheck.flow import Review
+    from setupcheck.report.review_blocks import HouseData, HouseHead
     from setupcheck.report.review_types import (
         CombinedData,
         EndsData,
         FindingData,
-        HouseData,
-        HouseHead,
         QuantityData,
         ReviewData,
         StackData,

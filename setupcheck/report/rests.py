@@ -15,7 +15,8 @@ from setupcheck.report.wording import clean, title_of, wrap
 if TYPE_CHECKING:
     from setupcheck.flow import Review
     from setupcheck.quantities.measure_first import First
-    from setupcheck.report.review_types import FirstData, RecordData, RecordUseData
+    from setupcheck.report.review_blocks import RecordData, RecordUseData
+    from setupcheck.report.review_types import FirstData
 
 FIRST_SHOWN = 3
 """Typical values told one by one without --all; the others in one line. Source: our screening choice."""

@@ -12,14 +12,14 @@ from typing import Any, Literal, Union, get_args, get_origin, get_type_hints, is
 
 from setupcheck.jobfile.keys import entries
 from setupcheck.jobfile.spelling import Schema
-from setupcheck.report import review_types
+from setupcheck.report import review_blocks, review_types
 from setupcheck.report.job_schema import DRAFT
 from setupcheck.report.json import FORMAT
 
 _BASE: dict[object, str] = {str: "string", int: "integer", float: "number", bool: "boolean", NoneType: "null"}
 
 DERIVED: dict[object, Any] = {
-    review_types.HouseData: review_types.HouseHead,
+    review_blocks.HouseData: review_blocks.HouseHead,
     review_types.StackData: review_types.CombinedData,
     review_types.ThenData: review_types.CombinedData,
 }
