@@ -13,7 +13,7 @@ import yaml
 
 from setupcheck.rulebook import NAME_FACT, SURFACE_FACT, Finding, RuleBook, evaluate, load_rulebook
 
-from .fakebook import QUANTITIES, FakeBook, FakeScope, facts_from, value_of
+from .fakebook import QUANTITIES, FakeBook, FakeScope, Has, Lacks, facts_from, value_of
 
 HERE = Path(__file__).parent
 RULES = HERE.parents[1] / "rules"
