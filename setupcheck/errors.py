@@ -16,7 +16,15 @@ _UNSHOWABLE = frozenset({"Cc", "Cf", "Cs", "Zl", "Zp"})  # controls, escapes, te
 
 
 class SetupcheckError(Exception):
-    """Everything this package refuses on purpose. Any other exception is a bug and keeps its traceback."""
+    """Everything this package refuses on purpose. Any other exception is a bug and keeps its traceback.
+
+    >>> from setupcheck import SetupcheckError, example
+    >>> try:
+    ...     example("no such job")
+    ... except SetupcheckError as wrong:
+    ...     print(str(wrong)[:35])
+    there is no shipped job 'no such jo
+    """
 
 
 @record
@@ -27,6 +35,9 @@ class Problem:
     line, column   counted from 1; line 0: the problem has no place in the text (a missing file)
     length         characters to underline on that line, at least one is
     problem, hint  what is wrong; what to write. No full stop at the end of the problem; an example may have lines
+
+    >>> Problem("units", 3, 8, 2, "'cm' is not known here", "Write mm or in").line
+    3
     """
 
     path: str
@@ -46,6 +57,15 @@ class JobError(SetupcheckError):
             23 |       clearance: 2,5 um
                |                  ^^^^^^
           '2,5 um' is not a length. Write a point for the decimal: 2.5 um
+
+    >>> wrong = JobError("a.yaml", ["units: cm"], [Problem("units", 1, 8, 2, "'cm' is not known here", "Write mm or in")])
+    >>> print(wrong)
+    a.yaml:1:8  units
+         1 | units: cm
+           |        ^^
+      'cm' is not known here. Write mm or in
+    >>> [problem.path for problem in wrong.problems]
+    ['units']
     """
 
     def __init__(self, file: str, lines: Sequence[str], problems: Iterable[Problem]) -> None:
@@ -76,7 +96,11 @@ class JobError(SetupcheckError):
 
 
 class RuleBookError(SetupcheckError):
-    """A rule file, house file or waiver that cannot be used: `rules/heat.yaml:12  problem. hint`."""
+    """A rule file, house file or waiver that cannot be used: `rules/heat.yaml:12  problem. hint`.
+
+    >>> print(RuleBookError("house.yaml", 12, "there is no rule HOLD-999", "See setupcheck rules"))
+    house.yaml:12  there is no rule HOLD-999. See setupcheck rules
+    """
 
     def __init__(self, file: str, line: int, problem: str, hint: str = "") -> None:
         super().__init__(file, line, problem, hint)

@@ -81,6 +81,11 @@ class Review:
     rulebook  the shipped one, or that of the house file
     devices   the shop's own record of its devices, and where the job names what stands in it
     of_house  house values that were taken, and where
+
+    >>> from setupcheck import Review, example, review
+    >>> found = review(example("index-plate"))
+    >>> isinstance(found, Review), found.verdict, found.evaluation.counts["fail"]
+    (True, 'pass', 0)
     """
 
     loaded: LoadedJob
@@ -108,6 +113,10 @@ def load_job(path: str | Path) -> LoadedJob:
     """Read and check a job file.
 
     Raises: JobError with every problem of the file, each with its line.
+
+    >>> from setupcheck import example, load_job
+    >>> [setup.op for setup in load_job(example("index-plate")).job.setups]
+    [10, 20, 30, 40]
     """
     return read_job(path)
 
@@ -125,6 +134,10 @@ def review(
     on       the day it is judged (ISO date), which waivers with an end need
     devices  file of a shop's own record of its devices, whose limits stand in for typical values; before the house file's own
     Raises: JobError, RuleBookError.
+
+    >>> from setupcheck import example, review
+    >>> review(example("index-plate")).verdict
+    'pass'
     """
     loaded = job if isinstance(job, LoadedJob) else load_job(job)
     own = read_house(house) if house is not None else None
@@ -176,7 +189,13 @@ def _let_go_of_older(book: Book) -> None:
 
 @record(eq=False)
 class Varied:
-    """A job before and after some of its entries were replaced or added."""
+    """A job before and after some of its entries were replaced or added.
+
+    >>> from setupcheck import Change, Varied, example, vary
+    >>> found = vary(example("index-plate"), [Change("setups.30.hold.centre.runout", "3 thou")])
+    >>> isinstance(found, Varied), found.before.verdict, found.after.verdict, found.changes[0].value
+    (True, 'pass', 'fail', '3 thou')
+    """
 
     before: Review
     after: Review
@@ -197,6 +216,10 @@ def vary(
     job  a Review has been made with the same house file, day and record: it is not made again
     Random draws are named after their causes, so that nothing moves which the changes do not reach.
     Raises: JobError for the file; JobError for the changes, each problem saying so; RuleBookError.
+
+    >>> from setupcheck import example, vary
+    >>> vary(example("index-plate"), {"setups.30.hold.centre.runout": "3 thou"}).after.verdict
+    'fail'
     """
     from setupcheck.jobfile.changing import changed, changes_of, from_set  # no review needs it
 
@@ -340,6 +363,16 @@ class ReadBack:
     """A division test read back: the job, the teeth it is of, what it says, how that stands to the plan, and its file's name.
 
     house  the house file whose values stand in the plan, if one does
+
+    >>> import os, tempfile
+    >>> from setupcheck import ReadBack, example, read_back
+    >>> with tempfile.TemporaryDirectory() as folder:
+    ...     path = os.path.join(folder, "test.csv")
+    ...     with open(path, "w", encoding="utf-8") as file:
+    ...         rows = file.write("tooth,deviation_arcsec\\n1,0\\n19,3\\n37,6\\n55,3\\n1,0\\n")
+    ...     read = read_back(example("rotator-worm-wheel"), path)
+    >>> isinstance(read, ReadBack), read.of.name, read.of.count
+    (True, 'wheel.teeth', 72)
     """
 
     loaded: LoadedJob
@@ -368,6 +401,13 @@ def read_back(
     instrument       expanded uncertainty of the angle standard, k = 2 [rad]; without it nothing is judged
     house, devices   a shop's house file and its own record of its devices, whose values stand in the plan, as for `review`
     Raises: JobError; SetupcheckError for the readings; RuleBookError.
+
+    >>> from setupcheck import SetupcheckError, example, read_back
+    >>> try:
+    ...     read_back(example("rotator-worm-wheel"), "nowhere.csv")
+    ... except SetupcheckError as wrong:
+    ...     print(str(wrong).split(". ")[0])
+    nowhere.csv: there is no such file
     """
     from setupcheck.division.readings import read_test
     from setupcheck.quantities.against import against

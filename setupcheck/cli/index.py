@@ -20,6 +20,8 @@ def command(
 ) -> None:
     """Print the index table of a setup that divides a circle: every place with its setting, and the start again.
 
+    Exit 0 told, 2 wrong use, unreadable job or nothing to tell.
+
     Example: setupcheck index jobs/rotator-worm-wheel.yaml --op 40 --csv teeth.csv
     """
     from setupcheck.errors import printable

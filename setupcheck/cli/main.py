@@ -30,6 +30,7 @@ from setupcheck.cli import (  # noqa: E402
     rules,
     schema,
     sheet,
+    streams,
     vary,
     working,
 )
@@ -57,6 +58,10 @@ app.command("remedy")(remedy.command)
 app.command("rules")(rules.command)
 app.command("sheet")(sheet.command)
 app.command("schema")(schema.command)
+if "_SETUPCHECK_COMPLETE" in os.environ:  # a shell asks at the TAB key; no other start pays for it
+    from setupcheck.cli import completing
+
+    completing.attach(app)
 
 
 @app.callback(invoke_without_command=True)
@@ -70,6 +75,7 @@ def options(version: bool = typer.Option(False, "--version", help="Print the ver
 
 def run() -> None:
     """Run the command inside a process that goes on, or that wants to end in the usual way."""
+    streams.settle()
     try:
         app()
     except SetupcheckError as wrong:

@@ -65,9 +65,9 @@ def command(
     tightest: Annotated[Text, _option("tightest", "Limit of the tightest requirement.")] = None,
     yes: Annotated[bool, typer.Option("--yes", help="Ask nothing: options, and defaults for the rest.")] = False,
 ) -> None:
-    """Write a first job file, commented, that reviews at once. Never replaces a file. Exit 0 once it is written.
+    """Write a first job file, commented, that reviews at once. Never replaces a file.
 
-    Asks on a terminal. Without one, or with --yes, options and defaults stand.
+    Asks on a terminal. Without one, or with --yes, options and defaults stand. Exit 0 written, 2 refused.
 
     Example: setupcheck new wheel.yaml --kind worm-wheel --teeth 72 --bore '32 H5' --yes
     """
@@ -180,7 +180,9 @@ def _asked(
         _list(examples=False)
     _, what = asking.take("kind", kind, kind_of, next(iter(KINDS)), "What kind of part?", "one of the above")
     _belongs(what, said)
-    _, unit = asking.take("units", units, units_of, "mm", "Which units?", "of sizes and positions in the file, mm or in")
+    _, unit = asking.take(
+        "units", units, units_of, "mm", "Which units?", "of sizes and positions in the file, mm or in"
+    )
     head, number = _title_and_job(asking, title, job, (what.title, what.job))
     answers, texts = Answers(what.name, head, number, unit, {}), {}
     for question in what.questions():

@@ -47,9 +47,11 @@ def command(
 ) -> None:
     """Reduce the readings of a division test, and set them against the plan: eccentricity, worm, backlash, scatter, owner.
 
-    Exit 0 inside the limit, 1 warn or open, 2 unreadable, 3 outside the limit.
+    Exit 0 inside the limit, 1 warn or open, 2 wrong use or unreadable, 3 outside the limit.
 
-    Example: setupcheck readings jobs/rotator-worm-wheel.yaml test.csv
+    Example: setupcheck readings --template > test.csv
+
+    Example: setupcheck readings jobs/rotator-worm-wheel.yaml test.csv --instrument 1.5arcsec
     """
     if template:
         from setupcheck.report.readings import template as text

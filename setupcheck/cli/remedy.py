@@ -24,9 +24,11 @@ def command(
     record: Record = None,
     on: Day = None,
 ) -> None:
-    """What each entry would have to become, which other datum or order does it, where to measure next. Exit as review.
+    """What each entry would have to become, which other datum or order does it, where to measure next.
 
     Of a job that passes: what is good enough already, and which setups could be one holding.
+
+    Exit as review: 0 pass, 1 warn or open, 2 wrong use or unreadable job, 3 fail.
 
     Example: setupcheck remedy jobs/mistakes/hidden-chuck-run-out.yaml
     """

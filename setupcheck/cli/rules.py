@@ -26,6 +26,8 @@ def command(
 ) -> None:
     """List the rules, or show one with its reason and sources; --check tells all that is wrong with a house file.
 
+    Exit 0 told, 2 wrong use, no such rule or a house file with a mistake.
+
     Example: setupcheck rules DATUM-001
     """
     from setupcheck.flow import read_house, rules

@@ -33,6 +33,8 @@ def command(
 ) -> None:
     """Write the setup sheet of a job: one file that prints on A4 and letter, a page for each operation.
 
+    Exit 0 written, whatever the verdict, 2 wrong use or unreadable job.
+
     Example: setupcheck sheet jobs/rotator-worm-wheel.yaml -o sheet.html
     """
     from setupcheck.flow import read_back, review

@@ -38,9 +38,11 @@ def command(
     record: Record = None,
     on: Day = None,
 ) -> None:
-    """Judge a job as it stands and with entries changed, side by side. Exit as review, for the changed job.
+    """Judge a job as it stands and with entries changed, side by side.
 
-    One value may be a range, as in 2um..20um or 2um..20um/7: a table tells where the verdict turns; exit as its worst.
+    One value may be a range, as in 2um..20um or 2um..20um/7: a table tells where the verdict turns.
+
+    Exit of the changed job, or the worst of a range: 0 pass, 1 warn or open, 2 wrong use or unreadable job, 3 fail.
 
     Example: setupcheck vary jobs/rotator-worm-wheel.yaml --set 'setups.30.hold.centre.runout=60 um'
     """

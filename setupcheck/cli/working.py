@@ -28,6 +28,8 @@ def command(
 ) -> None:
     """Show formula, inputs with their lines, source and evidence of one number.
 
+    Exit 0 told, 2 wrong use, unreadable job or no such number.
+
     Example: setupcheck working jobs/index-plate.yaml require[1]
     """
     from setupcheck.flow import load_job, prepare, read_house, with_own

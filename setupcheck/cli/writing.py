@@ -9,9 +9,38 @@ from pathlib import Path
 
 from setupcheck.errors import SetupcheckError, printable
 
+_DEVICES = {"CON", "PRN", "AUX", "NUL", *(f"{port}{n}" for port in ("COM", "LPT") for n in "123456789¹²³")}
+"""Names that Windows keeps for devices, whatever ending they have. Source: its documentation on naming files, from memory."""
+ON_WINDOWS = os.name == "nt"
+
+
+def kept_by_windows(name: str) -> str:
+    """Why a file of this name cannot be had under Windows; empty where it can.
+
+    >>> kept_by_windows("aux.svg")
+    'AUX is a device there'
+    >>> kept_by_windows("auxiliary.svg")
+    ''
+    """
+    device = name.partition(".")[0].rstrip(" ").upper()
+    if device in _DEVICES:
+        return f"{device} is a device there"
+    odd = next((character for character in name if character in '<>:"|?*'), "")
+    if odd:
+        return f"a name has no {odd} there"
+    return "a name ends with no point or space there" if name.endswith((".", " ")) else ""
+
+
+def _refuse_name(path: Path) -> None:
+    """Refuses a name that Windows would take for a device, for a stream of another file, or cut short."""
+    why = kept_by_windows(path.name) if ON_WINDOWS else ""
+    if why:
+        raise SetupcheckError(f"{printable(str(path))} cannot be a file: {why}. Write another name")
+
 
 def refuse_place(path: Path, *, force: bool) -> None:
     """Refuses a place where a drawing cannot be written, before anything is worked out."""
+    _refuse_name(path)
     shown = printable(str(path))
     if path.is_dir():
         raise SetupcheckError(f"{shown} is a folder. Write the name of a file, as in {shown}/drawing.svg")
@@ -44,6 +73,7 @@ def write_whole(path: Path, text: str, *, force: bool) -> None:
 
 def refuse_new(path: Path) -> None:
     """Refuses a place where a new file cannot be written. Nothing is ever replaced there, not even a link that leads nowhere."""
+    _refuse_name(path)
     shown = printable(str(path))
     try:
         if path.is_dir():

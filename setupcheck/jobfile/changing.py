@@ -31,6 +31,9 @@ class Change:
 
     key    path as the reports print it, `setups.30.hold.centre.clearance`
     value  in the job file's own notation, `20 um` or `{at_most: 10 um}`
+
+    >>> Change("setups.30.hold.centre.clearance", "20 um").told()
+    'setups.30.hold.centre.clearance=20 um'
     """
 
     key: str

@@ -7,8 +7,8 @@ import re
 
 from pydantic import BaseModel
 
-_ENTRY = re.compile(r"([a-z_]+(?:, [a-z_]+)*)  +(\S.*)")
-_NEXT = re.compile(r";  +(?=[a-z_]+(?:, [a-z_]+)*  )")
+_ENTRY = re.compile(r"([a-z0-9_]+(?:, [a-z0-9_]+)*)  +(\S.*)")
+_NEXT = re.compile(r";  +(?=[a-z0-9_]+(?:, [a-z0-9_]+)*  )")
 
 
 def keys_of(record: type[BaseModel]) -> dict[str, str]:
@@ -31,7 +31,7 @@ def descriptions(record: type[BaseModel]) -> dict[str, str]:
     keys = keys_of(record)
     for one in record.__mro__:
         if issubclass(one, BaseModel):
-            for names, words in _entries(_own_text(one)):
+            for names, words in entries(_own_text(one)):
                 found |= {name: words for name in names if name in keys and name not in found}
     return {key: found[key] for key in keys if key in found}
 
@@ -40,7 +40,7 @@ def _own_text(record: type[BaseModel]) -> str:
     return inspect.cleandoc(record.__dict__.get("__doc__") or "")
 
 
-def _entries(text: str) -> list[tuple[list[str], str]]:
+def entries(text: str) -> list[tuple[list[str], str]]:
     """(keys, words) of every entry in the paragraphs behind the first."""
     lines: list[str] = []
     for line in text.partition("\n\n")[2].splitlines():

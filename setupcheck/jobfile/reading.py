@@ -51,6 +51,13 @@ class LoadedJob:
 
     file  base name of the file;  sha256 of its text
     own   path -> what a shop's record, or a typical value beside it, put there instead of the planner
+
+    >>> from setupcheck import LoadedJob, example, load_job
+    >>> job = load_job(example("index-plate"))
+    >>> isinstance(job, LoadedJob), job.file, job.job.units
+    (True, 'index-plate.yaml', 'in')
+    >>> job.line("setups.30") > job.line("setups.20")
+    True
     """
 
     job: Job

@@ -57,6 +57,13 @@ class Gate:
     limits    what each requirement allows by itself, the tightest first
     indicator one division of the indicator that reads it [mm], 0 where the entry names none
     careful   somebody trues it by hand for this part: in a four-jaw, by indicator, or it has been measured
+
+    >>> from setupcheck import Gate, example, review
+    >>> gate = next(gate for gate in review(example("rotator-worm-wheel")).gates if gate.op == 50)
+    >>> isinstance(gate, Gate), gate.on, gate.reading > gate.planned > 0.0
+    (True, 'hub', True)
+    >>> gate.keys
+    ('setups.50.hold.centre.runout.measured',)
     """
 
     key: str

@@ -22,7 +22,15 @@ THINNEST_CUT = 0.02
 
 @record
 class Result:
-    """One stack, combined: what rules, gates and remedies look at."""
+    """One stack, combined: what rules, gates and remedies look at.
+
+    >>> from setupcheck import Result, example, review
+    >>> one = review(example("rotator-worm-wheel")).results["mid-plane.wheel-teeth.spindle-bearings"]
+    >>> isinstance(one, Result), one.stack.require.what, round(one.margin_share, 2)
+    (True, 'mid-plane', 0.08)
+    >>> one.combined.worst.high + one.margin <= one.stack.high + 1e-12  # mm, as the figure is
+    True
+    """
 
     stack: Stack
     combined: Combined

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Iterator
+from typing import TYPE_CHECKING
 
 from setupcheck.flow import Review
 from setupcheck.notation import show
@@ -10,6 +11,9 @@ from setupcheck.quantities.backlash_read import PATH, AsRead
 from setupcheck.quantities.book import Known, Open, Scope
 from setupcheck.report.wording import clean, wrap
 from setupcheck.report.worked_out import filled
+
+if TYPE_CHECKING:
+    from setupcheck.report.review_blocks import BacklashReadData
 
 SENTENCES = (
     "from {read.least} to {read.largest}, mean {read.mean}, one reading is known to ± {read.uncertainty}",
@@ -71,7 +75,7 @@ def _line(text: str) -> list[str]:
     return wrap(text, first="  - ", rest="    ")
 
 
-def backlash_read_as_data(found: Review) -> dict[str, object] | None:
+def backlash_read_as_data(found: Review) -> BacklashReadData | None:
     """The same as plain data, um and gap numbers; None where no backlash was read or it does not say enough yet."""
     for scope in found.book.instances("mesh"):
         answer = found.book.get("read.as_read", scope)
@@ -80,7 +84,7 @@ def backlash_read_as_data(found: Review) -> dict[str, object] | None:
     return None
 
 
-def _as_data(read: AsRead) -> dict[str, object]:
+def _as_data(read: AsRead) -> BacklashReadData:
     from setupcheck.report.json import plain_number
 
     def um(value: float) -> float:

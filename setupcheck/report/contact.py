@@ -17,6 +17,8 @@ from setupcheck.report.wording import clean, wrap
 if TYPE_CHECKING:
     import numpy as np
 
+    from setupcheck.report.review_blocks import ContactData
+
 ROWS, COLUMNS = 9, 33
 """Characters of a map; two of them and their margin make 77."""
 MARGIN, BETWEEN = 6, 4
@@ -80,7 +82,7 @@ def contacts(found: Review) -> Iterator[str]:
             yield from wrap(line, first="  - ", rest="    ")
 
 
-def contacts_as_data(found: Review) -> list[dict[str, object]]:
+def contacts_as_data(found: Review) -> list[ContactData]:
     """Maps and lines of each block; the numbers stand among the quantities."""
     return [
         {

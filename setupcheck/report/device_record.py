@@ -7,9 +7,36 @@ from pathlib import Path
 
 from setupcheck.notation import show
 from setupcheck.quantities.book import INCH
-from setupcheck.quantities.device_record import LEAST_ENTRIES, DeviceRecord, Series, read_record
+from setupcheck.quantities.device_record import HEADER, LEAST_ENTRIES, SIGNED, DeviceRecord, Series, read_record
 from setupcheck.quantities.own_values import Use
+from setupcheck.quantities.typical import WHATS
 from setupcheck.report.wording import clean, wrap
+
+_TEMPLATE = """\
+# What your shop's own devices gave. One line is one reading; lines that begin with # are for you.
+#
+# device  the name that jobs give it, as in runout: {{device: four-jaw-A}}
+# what    {sizes},
+#         or with a sign {signed}
+# date    2026-11-02
+# value   with its unit: 7 um, 0.3 thou, 5", -1.5', -4 K
+# note    may be left out
+#
+# From {least} entries on there is a limit for the next value. The lines below are made up: put your own in their place.
+{header}, note
+four-jaw-A, runout, 2026-01-12, 6 um
+four-jaw-A, runout, 2026-02-03, 7 um
+four-jaw-A, runout, 2026-03-18, 5 um, new jaws
+four-jaw-A, runout, 2026-05-02, 8 um
+four-jaw-A, runout, 2026-11-02, 6 um
+dividing-head-B, tilt, 2026-11-02, -1.5'
+"""
+
+
+def template() -> str:
+    """A record to start from, as CSV with every kind of reading explained."""
+    sizes = ", ".join(what for what in WHATS if what not in SIGNED)
+    return _TEMPLATE.format(sizes=sizes, signed=", ".join(SIGNED), least=LEAST_ENTRIES, header=HEADER)
 
 
 def load_record(path: Path) -> DeviceRecord:

@@ -15,6 +15,7 @@ if TYPE_CHECKING:
     from setupcheck.flow import Review
     from setupcheck.quantities.gate_bands import Band
     from setupcheck.quantities.length_gates import LengthGate
+    from setupcheck.report.review_types import GateData, LengthData
 
 NOT_CRITICAL = 10.0
 """A reading may be so many times its plan: no number is worth printing. Source: our screening choice."""
@@ -261,7 +262,7 @@ def step_of(value: float, indicator: float, *, inches: bool) -> float:
     return (0.00254 if inches else 0.001) / (10.0 if value < FINE_BELOW else 1.0)
 
 
-def gates_as_data(found: Review) -> list[dict[str, object]]:
+def gates_as_data(found: Review) -> list[GateData]:
     """Every dial reading to accept, in um."""
     inches = found.book.inches
     return [
@@ -290,7 +291,7 @@ def gates_as_data(found: Review) -> list[dict[str, object]]:
     ]
 
 
-def lengths_as_data(found: Review) -> list[dict[str, object]]:
+def lengths_as_data(found: Review) -> list[LengthData]:
     """Every length to accept: errors about the plan in um, sizes in mm."""
     inches = found.book.inches
 

@@ -3,11 +3,15 @@
 from __future__ import annotations
 
 from collections.abc import Iterator
+from typing import TYPE_CHECKING
 
 from setupcheck.flow import Review
 from setupcheck.quantities.book import Known, Scope
 from setupcheck.report.joint import fitted, has_play, in_words
 from setupcheck.report.wording import wrap
+
+if TYPE_CHECKING:
+    from setupcheck.report.review_blocks import HeatingPlanData
 
 STEPS: tuple[tuple[str, ...], ...] = (
     (
@@ -52,7 +56,7 @@ def heating_plans(found: Review) -> Iterator[str]:
             yield from wrap(said, first=f"  {step} ", rest="    ")
 
 
-def heating_plans_as_data(found: Review) -> list[dict[str, object]]:
+def heating_plans_as_data(found: Review) -> list[HeatingPlanData]:
     """The steps of each plan, by operation."""
     return [{"op": scope.op, "steps": steps} for scope, steps in _plans(found)]
 

@@ -12,6 +12,7 @@ from setupcheck.rulebook.house import House, HouseValue
 
 if TYPE_CHECKING:
     from setupcheck.flow import Review
+    from setupcheck.report.review_blocks import HouseData
 
 SHOWN_SHA = 12
 """Characters of the sha256 that are printed; JSON has all of them. Source: our choice."""
@@ -63,15 +64,15 @@ def unit_of_value(what: str) -> str:
     return "K" if what == "temperature_error" else "arcsec"
 
 
-def house_as_data(found: Review) -> dict[str, object] | None:
+def house_as_data(found: Review) -> HouseData | None:
     """The same for JSON, metric; None without a house."""
     house = found.house
     if house is None:
         return None
-    from setupcheck.report.json import house_head
-
     return {
-        **(house_head(house) or {}),
+        "name": clean(house.name),
+        "file": clean(house.file),
+        "sha256": house.sha256,
         "acts": [
             {"rule": rule, "places": places, "says": clean(said)} for (rule, said), places in acts_of(found).items()
         ],

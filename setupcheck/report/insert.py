@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Iterator
+from typing import TYPE_CHECKING
 
 from setupcheck.flow import Review
 from setupcheck.jobfile.grinding import Grinding
@@ -13,6 +14,9 @@ from setupcheck.quantities.inserts import decimals
 from setupcheck.report.exact import why_not
 from setupcheck.report.joint import in_words
 from setupcheck.report.wording import clean, wrap
+
+if TYPE_CHECKING:
+    from setupcheck.report.review_blocks import InsertData
 
 SHAPE: tuple[tuple[str, ...], ...] = (
     (
@@ -105,7 +109,7 @@ def _readings(found: Review, scope: Scope, cut: WheelCut) -> Iterator[str]:
         yield f"{number:>7}{cells[0]:>18}{cells[1]:>14}{cells[2]:>14}"
 
 
-def inserts_as_data(found: Review) -> list[dict[str, object]]:
+def inserts_as_data(found: Review) -> list[InsertData]:
     """The inserts by operation [mm]: heights with full widths, points with both readings, and the lines beneath."""
     return [
         {

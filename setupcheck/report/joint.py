@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Iterator, Sequence
+from typing import TYPE_CHECKING
 
 from setupcheck.flow import Review
 from setupcheck.jobfile.setups import Join
@@ -11,6 +12,9 @@ from setupcheck.quantities.book import Known, Open, Scope
 from setupcheck.quantities.pairing import FITTED
 from setupcheck.report.wording import wrap
 from setupcheck.report.worked_out import filled
+
+if TYPE_CHECKING:
+    from setupcheck.report.review_blocks import JointData
 
 LABEL, CELL = 24, 9
 """Widths of the table's columns; all of them make 78."""
@@ -76,7 +80,7 @@ def joints(found: Review) -> Iterator[str]:
         yield from _table(found, scope, join)
 
 
-def joints_as_data(found: Review) -> list[dict[str, object]]:
+def joints_as_data(found: Review) -> list[JointData]:
     """The lines under each table, by operation; the numbers of the table itself then stand among the quantities."""
     for scope, _ in fitted(found):
         for state, _ in STATES:

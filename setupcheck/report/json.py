@@ -27,6 +27,16 @@ from setupcheck.rulebook import Finding
 
 if TYPE_CHECKING:
     from setupcheck.flow import Review
+    from setupcheck.report.review_blocks import HouseData, HouseHead
+    from setupcheck.report.review_types import (
+        CombinedData,
+        EndsData,
+        FindingData,
+        QuantityData,
+        ReviewData,
+        StackData,
+        ThenData,
+    )
     from setupcheck.rulebook.house import House
 
 FORMAT = 1
@@ -37,7 +47,7 @@ DIGITS = 12
 DRAWN_DIGITS = 5
 """Significant digits of drawn values. Source: our choice."""
 
-Value = float | int | str | None
+Value = float | str | None
 
 
 def as_json(found: Review) -> str:
@@ -45,7 +55,7 @@ def as_json(found: Review) -> str:
     return json.dumps(as_data(found), ensure_ascii=False, indent=1, allow_nan=False) + "\n"
 
 
-def as_data(found: Review) -> dict[str, object]:
+def as_data(found: Review) -> ReviewData:
     """The report as plain data, ready for json."""
 
     from setupcheck import __version__
@@ -101,12 +111,12 @@ def plain_number(value: float) -> float:
     return float(f"{value:.{DIGITS}g}") + 0.0 if math.isfinite(value) else 0.0
 
 
-def house_head(house: House | None) -> dict[str, object] | None:
+def house_head(house: House | None) -> HouseHead | None:
     """Which house file acts; None where none does."""
     return {"name": clean(house.name), "file": clean(house.file), "sha256": house.sha256} if house is not None else None
 
 
-def _house(found: Review) -> dict[str, object] | None:
+def _house(found: Review) -> HouseData | None:
     if found.house is None:
         return None
     from setupcheck.report.house import house_as_data  # few jobs have one
@@ -125,14 +135,14 @@ def _shown(value: float | None, unit: str) -> float | None:
     return plain_number(value * FACTOR.get(METRIC.get(unit, unit), 1.0))
 
 
-def _ends(low: float, high: float, unit: str, *, signed: bool) -> object:
+def _ends(low: float, high: float, unit: str, *, signed: bool) -> float | EndsData | None:
     """A figure's worst, rss or likely: both ends of a signed figure, one number for those that start at zero."""
     return {"low": _shown(low, unit), "high": _shown(high, unit)} if signed else _shown(high, unit)
 
 
-def _quantities(found: Review) -> dict[str, object]:
+def _quantities(found: Review) -> dict[str, QuantityData]:
     """Every quantity that the review looked at and that is a number or a word."""
-    out: dict[str, object] = {}
+    out: dict[str, QuantityData] = {}
     for (name, scope), answer in sorted(found.book.made.items(), key=lambda item: (item[0][0], item[0][1].key)):
         if (
             not isinstance(answer, Known)
@@ -154,39 +164,34 @@ def _quantities(found: Review) -> dict[str, object]:
     return out
 
 
-def _stack(found: Review, scope: Scope) -> dict[str, object]:
+def _stack(found: Review, scope: Scope) -> StackData:
     stack = stack_of(scope)
     unit = METRIC.get(stack.unit, stack.unit)
-    head: dict[str, object] = {
+    result, then = found.results.get(scope.key), then_of(found, scope)
+    return {
         "name": scope.key,
         "what": stack.require.what,
         "of": stack.of or None,
         "about": stack.about or None,
         "limit": {"low": _shown(stack.low, unit), "high": _shown(stack.high, unit)},
         "unit": unit,
+        **(_combined(result, unit) if result is not None else _nothing()),
+        "then": _then(then, result, unit) if then is not None else None,
     }
-    result, then = found.results.get(scope.key), then_of(found, scope)
-    planned = {"then": _then(then, result, unit) if then is not None else None}
-    if result is None:
-        nothing: dict[str, object] = {
-            "worst": None,
-            "rss": None,
-            "likely": None,
-            "chance": None,
-            "chance_error": None,
-            "causes": [],
-        }
-        return {**head, **nothing, **planned}
-    return {**head, **_combined(result, unit), **planned}
 
 
-def _then(then: Result, now: Result | None, unit: str) -> dict[str, object]:
+def _nothing() -> CombinedData:
+    """The figure of a stack that is open."""
+    return {"worst": None, "rss": None, "likely": None, "chance": None, "chance_error": None, "causes": []}
+
+
+def _then(then: Result, now: Result | None, unit: str) -> ThenData:
     """The requirement as planned, where a measured value reaches it, with both margins."""
     margin = _shown(now.margin, unit) if now is not None else None
     return {**_combined(then, unit), "margin": _shown(then.margin, unit), "margin_now": margin}
 
 
-def _combined(result: Result, unit: str) -> dict[str, object]:
+def _combined(result: Result, unit: str) -> CombinedData:
     c, signed = result.combined, result.figure.signed
     return {
         "worst": _ends(c.worst.low, c.worst.high, unit, signed=signed),
@@ -207,12 +212,10 @@ def _combined(result: Result, unit: str) -> dict[str, object]:
     }
 
 
-def _finding(found: Review, f: Finding) -> dict[str, object]:
+def _finding(found: Review, f: Finding) -> FindingData:
     unit = METRIC.get(f.unit, f.unit)
 
-    def shown(value: object) -> object:
-        if isinstance(value, tuple):
-            return [shown(v) for v in value]
+    def shown(value: float | str | None) -> Value:
         return _shown(float(value), unit) if isinstance(value, float | int) else value
 
     return {
@@ -223,8 +226,8 @@ def _finding(found: Review, f: Finding) -> dict[str, object]:
         "verdict": f.verdict,
         "quantity": f.quantity,
         "value": shown(f.value),
-        "limit": shown(f.limit),
-        "margin": shown(f.margin),
+        "limit": [shown(v) for v in f.limit] if isinstance(f.limit, tuple) else shown(f.limit),
+        "margin": _shown(f.margin, unit),
         "unit": unit,
         "missing": list(f.missing),
         "message": clean(f.message),

@@ -5,6 +5,7 @@ from __future__ import annotations
 import json
 import math
 from collections.abc import Iterator
+from typing import TYPE_CHECKING
 
 from setupcheck.division.faces import acceptance
 from setupcheck.division.repeatability import EDITION, Repeatability
@@ -16,6 +17,9 @@ from setupcheck.notation import FACTOR, fixed
 from setupcheck.report.against import against_the_plan, on_a_workpiece
 from setupcheck.report.against import as_data as plan_as_data
 from setupcheck.report.wording import clean, wrap
+
+if TYPE_CHECKING:
+    from setupcheck.report.review_blocks import HouseHead
 
 __all__ = ["as_data", "as_json", "as_text", "template"]
 
@@ -316,7 +320,7 @@ def as_data(found: ReadBack) -> dict[str, object]:
     }  # fmt: skip
 
 
-def _house(found: ReadBack) -> dict[str, object] | None:
+def _house(found: ReadBack) -> HouseHead | None:
     if found.house is None:
         return None
     from setupcheck.report.json import house_head  # few tests have one

@@ -15,6 +15,8 @@ from setupcheck.report.wording import clean, title_of, wrap
 if TYPE_CHECKING:
     from setupcheck.flow import Review
     from setupcheck.quantities.measure_first import First
+    from setupcheck.report.review_blocks import RecordData, RecordUseData
+    from setupcheck.report.review_types import FirstData
 
 FIRST_SHOWN = 3
 """Typical values told one by one without --all; the others in one line. Source: our screening choice."""
@@ -55,28 +57,24 @@ def record_used(found: Review) -> Iterator[str]:
         yield from wrap(f"- {in_use(use, inches=found.book.inches)}", first="  ", rest="    ")
 
 
-def record_as_data(found: Review) -> dict[str, object] | None:
+def record_as_data(found: Review) -> RecordData | None:
     """The same for JSON, metric; None without a record."""
     if found.devices is None:
         return None
-    return {
-        "sha256": found.devices.record.sha256,
-        "used": [
-            {
-                "at": use.path,
-                "device": clean(use.series.device),
-                "what": use.series.what,
-                "entries": len(use.series.entries),
-                "limit": round(use.series.limit * FACTOR[use.series.metric], 6)
-                if use.series.limit is not None
-                else None,
-                "unit": use.series.metric,
-                "taken": use.taken,
-                "last_above": use.series.rising,
-            }
-            for use in found.devices.uses
-        ],
-    }
+    used: list[RecordUseData] = [
+        {
+            "at": use.path,
+            "device": clean(use.series.device),
+            "what": use.series.what,
+            "entries": len(use.series.entries),
+            "limit": round(use.series.limit * FACTOR[use.series.metric], 6) if use.series.limit is not None else None,
+            "unit": use.series.metric,
+            "taken": use.taken,
+            "last_above": use.series.rising,
+        }
+        for use in found.devices.uses
+    ]
+    return {"sha256": found.devices.record.sha256, "used": used}
 
 
 def first_of(found: Review) -> tuple[First, ...]:
@@ -123,7 +121,7 @@ def _decimals(shown: float) -> int:
     return len(text.partition(".")[2]) if "e" not in text else 0
 
 
-def first_as_data(found: Review) -> list[dict[str, object]]:
+def first_as_data(found: Review) -> list[FirstData]:
     """The same for JSON, metric."""
     return [
         {

@@ -164,7 +164,13 @@ class Trigger:
 
 @record
 class Caution:
-    """A safety line that an operation triggers whatever the findings say. It can never be waived or changed."""
+    """A safety line that an operation triggers whatever the findings say. It can never be waived or changed.
+
+    >>> from setupcheck import Caution, example, review
+    >>> book = review(example("index-plate")).rulebook
+    >>> isinstance(book.cautions[0], Caution), book.cautions[0].severity in ("caution", "stop-and-check")
+    (True, True)
+    """
 
     id: str
     severity: Severity
@@ -235,6 +241,12 @@ class Finding:
     rests_on  typical values used on the way
     house     who set the house limit, when and why; empty when the book's own limit was used
     waiver    the reason given; None when the finding is not waived
+
+    >>> from setupcheck import Finding, example, review
+    >>> found = review(example("index-plate")).evaluation.findings
+    >>> one = next(finding for finding in found if finding.rule == "STACK-001")
+    >>> isinstance(one, Finding), one.op, one.verdict, one.value <= one.limit
+    (True, None, 'pass', True)
     """
 
     rule: str

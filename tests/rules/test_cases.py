@@ -13,7 +13,7 @@ import yaml
 
 from setupcheck.rulebook import NAME_FACT, SURFACE_FACT, Finding, RuleBook, evaluate, load_rulebook
 
-from .fakebook import QUANTITIES, FakeBook, FakeScope, facts_from, value_of
+from .fakebook import QUANTITIES, FakeBook, FakeScope, Has, Lacks, facts_from, value_of
 
 HERE = Path(__file__).parent
 RULES = HERE.parents[1] / "rules"
@@ -63,7 +63,9 @@ def judged(case: Case) -> Finding:
     rule = book.rule(case.rule)
     assert rule is not None, f"there is no rule {case.rule}"
     scope = FakeScope(QUANTITIES[rule.quantity].per, at["key"], at["path"], at.get("op"), at.get("line", 0))
-    values = {name: value_of(text, QUANTITIES[name].unit) for name, text in case.given.items()}
+    values: dict[str | tuple[str, str], Has | Lacks] = {
+        name: value_of(text, QUANTITIES[name].unit) for name, text in case.given.items()
+    }
     facts = {NAME_FACT: at.get("name"), SURFACE_FACT: at.get("surface"), **(case.facts or {})}
     fake = FakeBook(QUANTITIES, [scope], values, {scope.key: (at.get("unit", ""), at.get("digits", 0))})
     found = [f for f in evaluate(book, fake, facts_from(facts)).findings if f.rule == case.rule]

@@ -257,7 +257,9 @@ def test_what_turns_prints_its_caution_at_its_limit(numbers: dict[str, float], n
     first = next(iter(numbers))
 
     def printed(value: Has | Lacks | None) -> bool:
-        rest = {key: Has(number) for key, number in numbers.items() if key != first}
+        rest: dict[str | tuple[str, str], Has | Lacks] = {
+            key: Has(number) for key, number in numbers.items() if key != first
+        }
         fake = FakeBook(SHIPPED_QUANTITIES, list(SCOPES.values()), {**rest, **({first: value} if value else {})})
         return name in ids(evaluate(shipped(), fake, facts_from({})))
 

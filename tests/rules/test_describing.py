@@ -81,7 +81,8 @@ def test_every_shipped_rule_says_why_and_what_to_do_in_a_sentence() -> None:
 
 
 def test_every_reference_is_cited_by_some_rule_or_caution() -> None:
-    cited = {source.ref for thing in (*shipped.rules, *shipped.cautions) for source in thing.sources}
+    every = [*(rule.sources for rule in shipped.rules), *(caution.sources for caution in shipped.cautions)]
+    cited = {source.ref for sources in every for source in sources}
     assert cited == set(shipped.references)
 
 

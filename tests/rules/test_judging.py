@@ -89,7 +89,7 @@ def test_a_word_that_nobody_listed_is_not_allowed() -> None:
 )
 def test_a_judgement_without_sense_is_refused(limits: dict[str, float], says: str) -> None:
     with pytest.raises(ValueError, match=says):
-        judge(1.0, level="fail", **limits)
+        judge(1.0, level="fail", low=limits.get("low"), high=limits.get("high"))
 
 
 def test_a_negative_uncertainty_is_refused() -> None:

@@ -2,11 +2,14 @@
 
 from __future__ import annotations
 
+import doctest
+import inspect
 import json
 import os
 import re
 import subprocess
 import sys
+import tomllib
 from pathlib import Path
 
 import pytest
@@ -53,6 +56,27 @@ def test_the_facade_offers_all_it_says() -> None:
         assert getattr(setupcheck, name) is not None
     with pytest.raises(AttributeError, match="has no attribute 'reviev'"):
         setupcheck.reviev  # noqa: B018
+
+
+@pytest.mark.parametrize("name", sorted(set(setupcheck.__all__) - {"__version__"}))
+def test_every_public_name_is_described_with_an_example_that_runs(name: str) -> None:
+    """The suite runs the doctests of the package; `as_records` and the version stand in the package's own text."""
+    what = getattr(setupcheck, name)
+    text = inspect.cleandoc((setupcheck.__doc__ if name == "as_records" else what.__doc__) or "")
+    examples = doctest.DocTestParser().get_examples(text)
+    assert any(name in one.source for one in examples)
+    assert any(one.want for one in examples)
+    assert what.__doc__
+
+
+def test_the_version_is_that_of_the_package_and_types_are_marked() -> None:
+    data = tomllib.loads((ROOT / "pyproject.toml").read_text(encoding="utf-8"))
+    assert data["project"]["version"] == setupcheck.__version__
+    assert re.fullmatch(r"\d+\.\d+\.\d+", setupcheck.__version__)
+    assert (ROOT / "setupcheck" / "py.typed").is_file()
+    assert data["tool"]["hatch"]["build"]["targets"]["wheel"]["packages"] == ["setupcheck"]
+    assert "Typing :: Typed" in data["project"]["classifiers"]
+    assert data["tool"]["mypy"]["strict"] is True
 
 
 def test_plain_records_are_those_of_the_json_report() -> None:
