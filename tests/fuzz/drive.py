@@ -18,6 +18,7 @@ from pathlib import Path
 from typing import TYPE_CHECKING
 
 from setupcheck.errors import SetupcheckError
+from setupcheck.flow import load_job, prepare
 from setupcheck.record import record
 from setupcheck.shipped import shipped
 from tests.bad_input.ring import RING
@@ -53,6 +54,9 @@ class Drive:
         (self.at / "ring.yaml").write_text(RING, "utf-8")
         self.rules = self.at / "rules"
         shutil.copytree(shipped("rules"), self.rules)
+        self.ring = load_job(self.at / "ring.yaml")
+        self.wheel = load_job(shipped("jobs") / "rotator-worm-wheel.yaml")
+        self.quantities = prepare(self.ring)[1].quantities
         self.refused = 0
 
     def close(self) -> None:
@@ -127,12 +131,11 @@ class Drive:
         from setupcheck.report.json import as_json
         from setupcheck.report.text import as_text
 
-        found = review(self.at / "ring.yaml", house=self._file("house.yaml", raw), on="2026-12-01")
+        found = review(self.ring, house=self._file("house.yaml", raw), on="2026-12-01")
         json.loads(as_json(found), parse_constant=_no_constant)
         return as_text(found, everything=True)
 
     def _rule(self, raw: bytes, deep: bool) -> str:
-        from setupcheck.flow import load_job, prepare
         from setupcheck.rulebook import load_rulebook
 
         head = raw[:4000].decode("utf-8", "replace")
@@ -146,7 +149,7 @@ class Drive:
         before = place.read_bytes() if place.exists() else None
         try:
             place.write_bytes(raw)
-            book = load_rulebook(self.rules, quantities=prepare(load_job(self.at / "ring.yaml"))[1].quantities)
+            book = load_rulebook(self.rules, quantities=self.quantities)
         finally:
             if before is None:
                 place.unlink()
@@ -161,14 +164,13 @@ class Drive:
 
         path = self._file("record.csv", raw)
         said = as_record(load_record(path))
-        return said + as_text(review(self.at / "ring.yaml", devices=path))
+        return said + as_text(review(self.ring, devices=path))
 
     def _readings(self, raw: bytes, deep: bool) -> str:
         from setupcheck.flow import read_back
         from setupcheck.report.readings import as_json, as_text
 
-        job = shipped("jobs") / "rotator-worm-wheel.yaml" if deep else self.at / "ring.yaml"
-        found = read_back(job, self._file("readings.csv", raw))
+        found = read_back(self.wheel if deep else self.ring, self._file("readings.csv", raw))
         json.loads(as_json(found), parse_constant=_no_constant)
         return as_text(found, diameter=None)
 

@@ -7,32 +7,11 @@ from functools import cache
 from setupcheck.division.template import template
 from setupcheck.shipped import shipped
 from tests.bad_input.ring import JOINED, RING
+from tests.bad_input.test_house_file import GOOD as HOUSE
 
 KINDS = ("job", "house", "rule", "record", "readings")
 SUFFIX = {"job": ".yaml", "house": ".yaml", "rule": ".yaml", "record": ".csv", "readings": ".csv"}
 
-HOUSE = """\
-house: Works standard
-limits:
-  - {rule: HOLD-006, value: 12 um, reason: "our heads are worn"}
-levels:
-  - {rule: STACK-001, level: warn, reason: trial run}
-typical:
-  four-jaw:
-    runout: 12 um
-rules:
-  - id: HOUSE-001
-    title: Room in every stack
-    quantity: stack.margin
-    require: {at_least: 5 um}
-    level: warn
-    message: "only {value} is left of {limit}"
-    remedy: leave more room
-    why: we were caught once
-    sources: [house]
-waive:
-  - {rule: HOLD-001, at: setups.20, reason: seen, until: 2027-01-01}
-"""
 RECORD = "device, what, date, value, note\n" + "".join(
     f"{device}, {what}, 2026-{month:02d}-1{month % 10}, {month + 3} {unit},\n"
     for device, what, unit in (("four-jaw-A", "runout", "um"), ("indicator-B", "reading", "um"), ("head-C", "tilt", "arcsec"))
