@@ -2,7 +2,9 @@
 
 from __future__ import annotations
 
+import errno
 import gc
+import io
 import os
 import sys
 from typing import NoReturn
@@ -33,7 +35,11 @@ from setupcheck.cli import (  # noqa: E402
     vary,
     working,
 )
+from setupcheck.cli.telling import tell  # noqa: E402
 from setupcheck.errors import SetupcheckError  # noqa: E402
+
+NO_ROOM = (errno.ENOSPC, errno.EFBIG, getattr(errno, "EDQUOT", errno.ENOSPC), errno.EIO)
+"""What the system says of an output that cannot be written where it goes."""
 
 app = typer.Typer(
     name="setupcheck",
@@ -70,14 +76,27 @@ def options(version: bool = typer.Option(False, "--version", help="Print the ver
 
 def run() -> None:
     """Run the command inside a process that goes on, or that wants to end in the usual way."""
+    for stream in (sys.stdout, sys.stderr):
+        if isinstance(stream, io.TextIOWrapper):  # a letter that the terminal's encoding lacks is no reason to end
+            stream.reconfigure(errors="replace")
     try:
         app()
     except SetupcheckError as wrong:
-        print(wrong, file=sys.stderr)
+        tell(wrong)
         sys.exit(2)
     except BrokenPipeError:
         sys.stderr.close()
         sys.exit(1)
+    except OSError as why:
+        if why.errno not in NO_ROOM:
+            raise
+        sys.exit(_no_room(why))
+
+
+def _no_room(why: OSError) -> int:
+    """Says that what was to be printed found no room (a full disk behind `>`)."""
+    print(f"the output cannot be written: {why.strerror}. Make room, or write it elsewhere", file=sys.stderr)
+    return 2
 
 
 # Python keeps its frames in chunks of 16 kB and hands one back as soon as it is empty: a loop that happens to call across
@@ -105,4 +124,8 @@ def run_and_leave() -> NoReturn:
                 stream.flush()
         except BrokenPipeError:  # whoever read it has gone
             code = code or 1
+        except OSError as why:
+            if why.errno not in NO_ROOM:
+                raise
+            code = _no_room(why)
     os._exit(code or 0)

@@ -11,6 +11,7 @@ import typer
 
 from setupcheck.cli.house import HouseFile, NoHouse, house_of
 from setupcheck.cli.options import AsJson, Day, Record, day_of
+from setupcheck.cli.telling import tell
 
 EXIT = {"pass": 0, "warn": 1, "open": 1, "fail": 3}
 
@@ -42,7 +43,7 @@ def command(
             acts = house_of(path, house, leave=no_house)
             code, text = _reviewed(path, as_json=as_json, everything=everything, house=acts, record=record, on=on)
         except SetupcheckError as wrong:
-            print(wrong, file=sys.stderr)
+            tell(wrong)
             worst = max(worst, 2)
             continue
         _show(text, colour=not as_json and _wants_colour(color))
