@@ -180,7 +180,9 @@ def _asked(
         _list(examples=False)
     _, what = asking.take("kind", kind, kind_of, next(iter(KINDS)), "What kind of part?", "one of the above")
     _belongs(what, said)
-    _, unit = asking.take("units", units, units_of, "mm", "Which units?", "of sizes and positions in the file, mm or in")
+    _, unit = asking.take(
+        "units", units, units_of, "mm", "Which units?", "of sizes and positions in the file, mm or in"
+    )
     head, number = _title_and_job(asking, title, job, (what.title, what.job))
     answers, texts = Answers(what.name, head, number, unit, {}), {}
     for question in what.questions():

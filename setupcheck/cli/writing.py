@@ -19,7 +19,7 @@ from pathlib import Path
 from setupcheck.errors import SetupcheckError, printable
 
 BEFORE, BEHIND = ".setupcheck-", ".part"
-"""Name of a part file: short and its own, so that a name of any length can be written, and that no other file is taken for one."""
+"""Name of a part file: short, so that a name of any length can be written, and no other file is taken for one."""
 STALE = 86_400.0
 """Seconds after which a part file is nobody's any more. Source: our choice; a write takes less than a second."""
 

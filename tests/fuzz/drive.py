@@ -27,7 +27,7 @@ if TYPE_CHECKING:
     from setupcheck.flow import Review
 
 BOUND = 60
-"""Seconds after which one file hangs: a job of this size takes less than one. Our choice, generous for a busy machine."""
+"""Seconds of the processor after which one file hangs; a large job with all that is made of it takes some. Our choice."""
 PACKAGE = "setupcheck"
 CHECKOUT = Path(__file__).resolve().parents[2]
 
@@ -98,7 +98,7 @@ class Drive:
         found = review(self._file("job.yaml", raw))
         data = as_json(found)
         json.loads(data, parse_constant=_no_constant)
-        said = as_text(found, everything=True) + as_text(found)
+        said = data + as_text(found, everything=True) + as_text(found)
         return said + self._deep(found) if deep else said
 
     def _deep(self, found: Review) -> str:
@@ -110,8 +110,9 @@ class Drive:
 
         def mended() -> str:
             both = mend(found.loaded)
-            json.loads(remedy_data.as_json(*both), parse_constant=_no_constant)
-            return remedy.as_text(*both)
+            data = remedy_data.as_json(*both)
+            json.loads(data, parse_constant=_no_constant)
+            return data + remedy.as_text(*both)
 
         said = ""
         for made in (
@@ -132,8 +133,9 @@ class Drive:
         from setupcheck.report.text import as_text
 
         found = review(self.ring, house=self._file("house.yaml", raw), on="2026-12-01")
-        json.loads(as_json(found), parse_constant=_no_constant)
-        return as_text(found, everything=True)
+        data = as_json(found)
+        json.loads(data, parse_constant=_no_constant)
+        return data + as_text(found, everything=True)
 
     def _rule(self, raw: bytes, deep: bool) -> str:
         from setupcheck.rulebook import load_rulebook
@@ -171,8 +173,9 @@ class Drive:
         from setupcheck.report.readings import as_json, as_text
 
         found = read_back(self.wheel if deep else self.ring, self._file("readings.csv", raw))
-        json.loads(as_json(found), parse_constant=_no_constant)
-        return as_text(found, diameter=None)
+        data = as_json(found)
+        json.loads(data, parse_constant=_no_constant)
+        return data + as_text(found)
 
 
 def _no_constant(name: str) -> float:
@@ -199,21 +202,21 @@ def _innermost() -> str:
 
 @contextmanager
 def _bounded() -> Iterator[None]:
-    """Raises Hang inside where the bound passes; no bound where the system has no alarm."""
-    if not hasattr(signal, "SIGALRM"):
+    """Raises Hang inside where the bound passes, in time of the processor; no bound where the system has no such timer."""
+    if not hasattr(signal, "SIGPROF"):
         yield
         return
 
     def ring(*_: object) -> None:
         raise Hang
 
-    before = signal.signal(signal.SIGALRM, ring)
-    signal.alarm(BOUND)
+    before = signal.signal(signal.SIGPROF, ring)
+    signal.setitimer(signal.ITIMER_PROF, BOUND)
     try:
         yield
     finally:
-        signal.alarm(0)
-        signal.signal(signal.SIGALRM, before)
+        signal.setitimer(signal.ITIMER_PROF, 0.0)
+        signal.signal(signal.SIGPROF, before)
 
 
 def smaller(raw: bytes, same: Callable[[bytes], bool], *, attempts: int = 400) -> bytes:

@@ -27,15 +27,19 @@ WILD = (
     "{measured: 3 um}", "{measured: 3 um, high_at: tooth 1}", "{measured: 3 um, uncertainty: 9 um}", "{at_most: 1 um}",
     "{device: D, mark: kept}", "chord", "free", "'@'", "a.b.c", "a@b@c", "bore@20", "bore@\u00b2", "x" * 300, "x " * 2000,
     "=1+1", "+1", "-1+1", "@SUM(A1)", "\t=1", "\x1b[31m", "\x1b]0;gone\x07", "\x9b31m", "\u202egnp.exe", "\u2066x\u2069",
-    "\u200b", "\u2028", "\ufeff", "\x07", "\x7f", "\x00", "\ud7ff", "\U0001f600", "e\u0301" * 40, "\u0661\u0662", "\u00bd", "\u2126",
+    "\u200b", "\u2028", "\ufeff", "\x07", "\x7f", "\x00", "\ud7ff", "\U0001f600", "e\u0301" * 40, "\u0661\u0662", "\u00bd",
+    "\u2126",
     "&a x", "*a", "!!python/object/apply:os.system [x]", "!!binary aGk=", "! x", "<<", "? x", "|", ">", "%TAG", "---", "...",
     "{device: {device: {device: x}}}", "[" * 30 + "]" * 30, "{measured: {measured: 1 um}}", "20 degC", "-300 degC", "1e+9 degC",
-    "<script>alert(1)</script>", "]]>", "&amp;", "\\", "C:\\a", "../../etc/passwd", "{{7*7}}", "{value}", "%s", "None", "__class__",
+    "<script>alert(1)</script>", "]]>", "&amp;", "\\", "C:\\a", "../../etc/passwd", "{{7*7}}", "{value}", "%s", "None",
+    "__class__",
 )  # fmt: skip
 BYTES = (
-    b"\x00", b"\xff", b"\xfe\xff", b"\xc3", b"\xed\xa0\x80", b"\xf4\x90\x80\x80", b"\x1b[2J", b"\r", b"\t", b"\x85", b"\xe2\x80\xa8",
-    b"\xef\xbb\xbf", b"\xe2\x80\xae", b":", b"- ", b"  ", b"\n", b"\n---\n", b"{", b"}", b"[", b"]", b",", b"'", b'"', b"#", b"&a ",
-    b"*a", b"!", b"|\n", b"%", b"@", b"`", b"? ", b": ", b"<<: ", b"9" * 50, b"e+308", b"\x80", b"\x9b", b";", b"=",
+    b"\x00", b"\xff", b"\xfe\xff", b"\xc3", b"\xed\xa0\x80", b"\xf4\x90\x80\x80", b"\x1b[2J", b"\r", b"\t", b"\x85",
+    b"\xe2\x80\xa8",
+    b"\xef\xbb\xbf", b"\xe2\x80\xae", b":", b"- ", b"  ", b"\n", b"\n---\n", b"{", b"}", b"[", b"]", b",", b"'", b'"', b"#",
+    b"<<: ", b"&a ",
+    b"*a", b"!", b"|\n", b"%", b"@", b"`", b"? ", b": ", b"9" * 50, b"e+308", b"\x80", b"\x9b", b";", b"=",
 )  # fmt: skip
 
 

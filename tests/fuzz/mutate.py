@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import contextlib
 import copy
 import random
 import re
@@ -64,7 +65,9 @@ def maps(root: yaml.Node) -> list[yaml.MappingNode]:
 def in_tree(text: str, kind: str, rng: random.Random) -> str:
     """The text with one to four changes of its tree."""
     root = _composed(text)
-    mild = rng.random() < 0.5  # one change that is likely to be read, so that what comes behind the reader is met as well
+    mild = (
+        rng.random() < 0.5
+    )  # one change that is likely to be read, so that what comes behind the reader is met as well
     for _ in range(1 if mild else rng.choice((1, 1, 2, 2, 3))):
         if found := maps(root):
             rng.choice(MILD if mild else CHANGES)(rng.choice(found), kind, rng)
@@ -140,13 +143,15 @@ def _entries(map_: yaml.MappingNode, kind: str, rng: random.Random) -> None:
     found = [v for _, v in map_.value if isinstance(v, yaml.SequenceNode) and v.value]
     if found:
         entries = rng.choice(found).value
-        rng.choice((lambda: entries.pop(rng.randrange(len(entries))), lambda: entries.append(entries[0]), entries.reverse))()
+        rng.choice(
+            (lambda: entries.pop(rng.randrange(len(entries))), lambda: entries.append(entries[0]), entries.reverse)
+        )()
 
 
 Change = Callable[[yaml.MappingNode, str, random.Random], None]
 CHANGES: tuple[Change, ...] = (
-    _lost, _lost, _twice, _swapped, _foreign, _foreign, _foreign, _added, _added, _wild, _wild, _renamed, _number, _number, _number,
-    _deeper, _entries, _entries,
+    _lost, _lost, _twice, _swapped, _foreign, _foreign, _foreign, _added, _added, _wild, _wild, _renamed, _number, _number,
+    _number, _deeper, _entries, _entries,
 )  # fmt: skip
 MILD: tuple[Change, ...] = (_foreign, _foreign, _lost, _number, _number, _entries)
 
@@ -188,7 +193,9 @@ def in_bytes(raw: bytes, rng: random.Random) -> bytes:
             again = raw[at : at + rng.choice((1, 20, 300))]
             raw = raw[:at] + again * rng.choice((2, 3, 50)) + raw[at:]
         elif what == 3 and rng.random() < 0.2:
-            raw = raw.decode("utf-8", "replace").encode(rng.choice(("utf-16", "utf-16-le", "latin-1", "utf-32", "cp037")), "replace")
+            raw = raw.decode("utf-8", "replace").encode(
+                rng.choice(("utf-16", "utf-16-le", "latin-1", "utf-32", "cp037")), "replace"
+            )
         else:
             raw = raw[:at] + rng.choice(BYTES) * rng.choice((1, 1, 1, 30)) + raw[at:]
         raw = raw[:100_000]
@@ -200,9 +207,7 @@ def spoilt(kind: str, rng: random.Random) -> bytes:
     text = rng.choice(sound(kind))
     how = rng.random()
     if how < 0.8:
-        try:
+        with contextlib.suppress(yaml.YAMLError):  # a tree that cannot be written as YAML, such as one with a NUL
             text = (in_cells if kind in ("record", "readings") else in_tree)(text, kind, rng)
-        except yaml.YAMLError:  # a tree that cannot be written as YAML, such as one with a NUL
-            pass
     raw = text.encode("utf-8", "surrogatepass")
     return in_bytes(raw, rng) if how > 0.75 else raw

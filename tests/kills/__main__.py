@@ -26,7 +26,9 @@ def main(arguments: list[str]) -> int:
         with tempfile.TemporaryDirectory() as folder:
             left = kills(Path(folder), count, given.seed, how)
         what = "replacing a file" if how == "whole" else "writing a new file (old: none there)"
-        print(f"{what}: {count} kills, {left.old} old, {left.new} new, {left.third} a third, {left.parts} part files left")
+        print(
+            f"{what}: {count} kills, {left.old} old, {left.new} new, {left.third} a third, {left.parts} part files left"
+        )
         third += left.third
     return 1 if third else 0
 

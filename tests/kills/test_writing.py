@@ -63,7 +63,8 @@ from pathlib import Path
 resource.setrlimit(resource.RLIMIT_FSIZE, (100_000, 100_000))
 from setupcheck.cli.writing import write_new, write_whole
 from setupcheck.errors import SetupcheckError
-for write in (lambda: write_whole(Path("sheet.html"), "x" * 200_000, force=True), lambda: write_new(Path("new.yaml"), "x" * 200_000)):
+text = "x" * 200_000
+for write in (lambda: write_whole(Path("sheet.html"), text, force=True), lambda: write_new(Path("new.yaml"), text)):
     try:
         write()
     except SetupcheckError as wrong:
