@@ -16,6 +16,7 @@ from pydantic_core import ErrorDetails
 
 from setupcheck.errors import JobError, Problem, printable
 from setupcheck.jobfile import (
+    counts,
     cuts,
     directions,
     gauges,
@@ -178,6 +179,7 @@ def _contradictions(data: Mapping[str, Data], job: Job | None) -> Iterator[names
     yield from sense.contradictions(surfaces, asked, names.uses(data), units=units)
     drawing = drawing_of(data, surfaces, units)
     for check in (
+        counts.beyond,
         reach.beyond,
         directions.nowhere,
         joints.misfits,
