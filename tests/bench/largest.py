@@ -1,4 +1,4 @@
-"""The largest job that is read: every count at its limit, each surface hanging on the one before, every gap with its own causes."""
+"""The largest job that is read: every count at its limit, each surface hanging on the one before."""
 
 from __future__ import annotations
 
@@ -28,10 +28,9 @@ def largest(setups: int = MOST_SETUPS, surfaces: int = MOST_SURFACES, requiremen
     for n in range(1, setups + 1):
         cut = f"s{n}: {{}}" if n < setups else "teeth: {error: 20 um}"
         divide = "" if n < setups else '\n    divide: {by: hole-circle, circle: 25, setting: 5"}'
-        lines.append(
-            f"  - op: {n * 10}\n    machine: head\n    looks_at_tool: +z\n"
-            f"    hold: {{centre: {{on: s{n - 1}, by: four-jaw, runout: {n % 7 + 1} um}}, square: {square}}}{divide}\n    cut: {{{cut}}}"
-        )
+        centre = f"{{on: s{n - 1}, by: four-jaw, runout: {n % 7 + 1} um}}"
+        lines += [f"  - op: {n * 10}", "    machine: head", "    looks_at_tool: +z"]
+        lines.append(f"    hold: {{centre: {centre}, square: {square}}}{divide}\n    cut: {{{cut}}}")
     lines.append("require:")
     for n in range(requirements - 1):
         lines.append(f"  - {{what: run-out, of: s{setups - 1 - n % (setups - 2)}, about: s0, at_most: {50 + n} um}}")

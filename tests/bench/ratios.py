@@ -228,7 +228,9 @@ def largest_job() -> None:
             for path in (big, JOB)
         ]
     (large, high), (usual, low) = ((float(a), float(b)) for a, b in told)
-    print(f"{'largest job that is read / worm wheel, processor':<58} {large:8.1f} / {usual:8.1f} s  = {large / usual:5.1f}")
+    print(
+        f"{'largest job that is read / worm wheel, processor':<58} {large:8.1f} / {usual:8.1f} s  = {large / usual:5.1f}"
+    )
     print(f"{'the same, peak memory':<58} {high:8.0f} / {low:8.0f} MB = {high / low:5.1f}")
 
 
