@@ -29,19 +29,17 @@ Gates are what the dial may show at each hold, with all else as planned [mm]:
 from __future__ import annotations
 
 import os
-from collections import deque
 from collections.abc import Callable, Mapping, Sequence
 from dataclasses import field
 from functools import cache, partial
 from pathlib import Path
 from typing import TYPE_CHECKING
-from weakref import ref
 
 from setupcheck.jobfile.reading import LoadedJob, read_job
 from setupcheck.quantities.book import Book, Known, Open, Scope
 from setupcheck.quantities.facts import UnknownFact, facts_of
 from setupcheck.quantities.gates import Gate, gates
-from setupcheck.quantities.judged import Result, forget_draws
+from setupcheck.quantities.judged import Result
 from setupcheck.quantities.route import walk
 from setupcheck.quantities.scopes import scopes
 from setupcheck.quantities.shop import Floor
@@ -155,7 +153,7 @@ def review(
 
     found = evaluate(book_of_rules, book, facts, house=own, waivers=_waivers(loaded), answers=_answers(loaded), on=on)
     results = stack_results(book)
-    _let_go_of_older(book)
+    let_go_of_older(book)
     return Review(
         loaded,
         floor,
@@ -171,20 +169,6 @@ def review(
         uses,
         of_house,
     )
-
-
-DRAWS_KEPT = 2
-"""Reviews whose random values stay in memory, as a change is held against what was before it. Source: our choice."""
-_drawn: deque[ref[Book]] = deque()
-
-
-def _let_go_of_older(book: Book) -> None:
-    """The random values of earlier reviews, 10 MB each, go: a list of reviews would fill the memory with what is seldom asked."""
-    _drawn.append(ref(book))
-    while len(_drawn) > DRAWS_KEPT:
-        older = _drawn.popleft()()
-        if older is not None:
-            forget_draws(older.made.values())
 
 
 @record(eq=False)

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import errno
 import gc
 import os
 import sys
@@ -34,7 +35,11 @@ from setupcheck.cli import (  # noqa: E402
     vary,
     working,
 )
-from setupcheck.errors import JobError, SetupcheckError  # noqa: E402
+from setupcheck.cli.telling import tell  # noqa: E402
+from setupcheck.errors import SetupcheckError  # noqa: E402
+
+NO_ROOM = (errno.ENOSPC, errno.EFBIG, getattr(errno, "EDQUOT", errno.ENOSPC), errno.EIO)
+"""What the system says of an output that cannot be written where it goes."""
 
 app = typer.Typer(
     name="setupcheck",
@@ -79,11 +84,21 @@ def run() -> None:
     try:
         app()
     except SetupcheckError as wrong:
-        print(wrong.wrapped() if isinstance(wrong, JobError) else wrong, file=sys.stderr)
+        tell(wrong)
         sys.exit(2)
     except BrokenPipeError:
         sys.stderr.close()
         sys.exit(1)
+    except OSError as why:
+        if why.errno not in NO_ROOM:
+            raise
+        sys.exit(_no_room(why))
+
+
+def _no_room(why: OSError) -> int:
+    """Says that what was to be printed found no room (a full disk behind `>`)."""
+    print(f"the output cannot be written: {why.strerror}. Make room, or write it elsewhere", file=sys.stderr)
+    return 2
 
 
 # Python keeps its frames in chunks of 16 kB and hands one back as soon as it is empty: a loop that happens to call across
@@ -111,4 +126,8 @@ def run_and_leave() -> NoReturn:
                 stream.flush()
         except BrokenPipeError:  # whoever read it has gone
             code = code or 1
+        except OSError as why:
+            if why.errno not in NO_ROOM:
+                raise
+            code = _no_room(why)
     os._exit(code or 0)

@@ -85,6 +85,8 @@ def read_test(path: str | Path, *, progress: Callable[[int], None] | None = None
     place = Path(path)
     shown = printable(str(place))
     try:
+        if place.exists() and not place.is_file() and not place.is_dir():  # a pipe would keep us waiting
+            raise SetupcheckError(f"{shown} is no plain file. Write the name of a CSV on the disk")
         with place.open("rb") as file:
             return _read(file, shown, progress)
     except IsADirectoryError:

@@ -14,8 +14,9 @@ from typing import Annotated, Literal, TypeVar, Union, get_args, get_origin
 from pydantic import BaseModel, TypeAdapter, ValidationError
 from pydantic_core import ErrorDetails
 
-from setupcheck.errors import JobError, Problem
+from setupcheck.errors import JobError, Problem, printable
 from setupcheck.jobfile import (
+    counts,
     cuts,
     directions,
     gauges,
@@ -160,7 +161,7 @@ def read_tree(tree: Tree, sha256: str) -> LoadedJob:
         problems.append(_at(place, tree.dotted(miss.path), miss.message))
     if problems or tree.problems or job is None:
         raise JobError(tree.file, tree.lines, tree.together(p for p in problems if not _behind_comma(p, tree)))
-    return LoadedJob(job, tree, Path(tree.file).name, sha256)
+    return LoadedJob(job, tree, printable(Path(tree.file).name), sha256)
 
 
 def _behind_comma(problem: Problem, tree: Tree) -> bool:
@@ -185,6 +186,7 @@ def _contradictions(data: Mapping[str, Data], job: Job | None) -> Iterator[names
     yield from sense.contradictions(surfaces, asked, names.uses(data), units=units)
     drawing = drawing_of(data, surfaces, units)
     for check in (
+        counts.beyond,
         reach.beyond,
         directions.nowhere,
         joints.misfits,

@@ -2,13 +2,15 @@
 
 from __future__ import annotations
 
+from collections import deque
 from collections.abc import Iterable
 from dataclasses import replace
+from weakref import ref
 
 from setupcheck.jobfile.reading import LoadedJob
 from setupcheck.ledger.combine import Combined, Draws, Ends, combine
 from setupcheck.ledger.figures import Figure
-from setupcheck.quantities.book import Answer, Known, Open
+from setupcheck.quantities.book import Answer, Book, Known, Open
 from setupcheck.quantities.relations import Built
 from setupcheck.quantities.requirements import Stack
 from setupcheck.quantities.scopes import CutEntry
@@ -76,6 +78,20 @@ def forget_draws(answers: Iterable[Answer]) -> None:
             value = getattr(value, "draws", None)  # of the plan beside what was measured
         if isinstance(value, Draws):
             value.forget()
+
+
+DRAWS_KEPT = 2
+"""Reviews whose random values stay in memory, as a change is held against what was before it. Source: our choice."""
+_drawn: deque[ref[Book]] = deque()
+
+
+def let_go_of_older(book: Book) -> None:
+    """The random values of earlier reviews, 10 MB each, go: a list of reviews would fill the memory with what is seldom asked."""
+    _drawn.append(ref(book))
+    while len(_drawn) > DRAWS_KEPT:
+        older = _drawn.popleft()()
+        if older is not None:
+            forget_draws(older.made.values())
 
 
 def requirements(floor: Floor) -> float:

@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-import json
 import math
 from typing import TYPE_CHECKING
 
@@ -10,6 +9,7 @@ from setupcheck.notation import FACTOR
 from setupcheck.quantities.book import INCH, Known, Scope
 from setupcheck.quantities.judged import Result
 from setupcheck.quantities.scopes import stack_of
+from setupcheck.report.as_json import json_text
 from setupcheck.report.backlash_read import backlash_read_as_data
 from setupcheck.report.contact import contacts_as_data
 from setupcheck.report.gates import gates_as_data, lengths_as_data
@@ -52,7 +52,7 @@ Value = float | str | None
 
 def as_json(found: Review) -> str:
     """The whole report as one JSON object, keys in a fixed order, ending in a newline."""
-    return json.dumps(as_data(found), ensure_ascii=False, indent=1, allow_nan=False) + "\n"
+    return json_text(as_data(found))
 
 
 def as_data(found: Review) -> ReviewData:

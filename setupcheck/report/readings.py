@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-import json
 import math
 from collections.abc import Iterator
 from typing import TYPE_CHECKING
@@ -16,6 +15,7 @@ from setupcheck.flow import ReadBack
 from setupcheck.notation import FACTOR, fixed
 from setupcheck.report.against import against_the_plan, on_a_workpiece
 from setupcheck.report.against import as_data as plan_as_data
+from setupcheck.report.as_json import json_text
 from setupcheck.report.wording import clean, wrap
 
 if TYPE_CHECKING:
@@ -264,7 +264,7 @@ def _fine(found: ReadBack, x: Interval) -> str:
 
 def as_json(found: ReadBack) -> str:
     """The whole report as one JSON object, format 1."""
-    return json.dumps(as_data(found), ensure_ascii=False, indent=1, allow_nan=False) + "\n"
+    return json_text(as_data(found))
 
 
 def as_data(found: ReadBack) -> dict[str, object]:

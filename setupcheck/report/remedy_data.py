@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-import json
 import math
 from collections.abc import Sequence
 
@@ -12,6 +11,7 @@ from setupcheck.quantities.good_enough import FOUND_AT, KNOWN_TO, Enough, Pays
 from setupcheck.quantities.mending import Mended
 from setupcheck.quantities.proposals import Idea, Proposal
 from setupcheck.quantities.single_causes import Entry, Row, Table
+from setupcheck.report.as_json import json_text
 from setupcheck.report.edits import as_data as edits_as_data
 from setupcheck.report.json import FORMAT, METRIC, house_head, plain_number
 from setupcheck.report.proposals import idea_in_words
@@ -22,7 +22,7 @@ from setupcheck.report.wording import clean
 
 def as_json(found: Review, mended: Mended) -> str:
     """One JSON object, keys in a fixed order, ending in a newline."""
-    return json.dumps(as_data(found, mended), ensure_ascii=False, indent=1, allow_nan=False) + "\n"
+    return json_text(as_data(found, mended))
 
 
 def as_data(found: Review, mended: Mended) -> dict[str, object]:

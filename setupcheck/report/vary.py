@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-import json
 import math
 from collections.abc import Iterator, Sequence
 
@@ -14,6 +13,7 @@ from setupcheck.quantities.book import Book, Known, Scope
 from setupcheck.quantities.judged import Result
 from setupcheck.quantities.scopes import stack_of
 from setupcheck.record import record
+from setupcheck.report.as_json import json_text
 from setupcheck.report.json import DRAWN_DIGITS, FORMAT, METRIC, house_head, plain_number
 from setupcheck.report.text import limits_in_words
 from setupcheck.report.wording import clean, title_of, unit_of, wrap
@@ -269,7 +269,7 @@ def _many(n: int, one: str, more: str) -> str:
 
 def as_json(found: Varied) -> str:
     """The comparison as one JSON object, keys in a fixed order, ending in a newline."""
-    return json.dumps(as_data(found), ensure_ascii=False, indent=1, allow_nan=False) + "\n"
+    return json_text(as_data(found))
 
 
 def as_data(found: Varied) -> dict[str, object]:

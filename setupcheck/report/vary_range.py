@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-import json
 from collections.abc import Callable, Iterator, Sequence
 from decimal import Decimal
 from itertools import pairwise
@@ -12,6 +11,7 @@ from setupcheck.jobfile.changing import Change
 from setupcheck.jobfile.ranging import Range
 from setupcheck.quantities.judged import Result
 from setupcheck.record import record
+from setupcheck.report.as_json import json_text
 from setupcheck.report.json import plain_number
 from setupcheck.report.text import limits_in_words
 from setupcheck.report.vary import STILL
@@ -177,7 +177,7 @@ def _requirements(swept: Swept) -> Iterator[str]:
 
 def as_json(swept: Swept) -> str:
     """The table as one JSON object, keys in a fixed order, ending in a newline."""
-    return json.dumps(as_data(swept), ensure_ascii=False, indent=1, allow_nan=False) + "\n"
+    return json_text(as_data(swept))
 
 
 def as_data(swept: Swept) -> dict[str, object]:

@@ -19,10 +19,15 @@ ROUNDING = 1e-6
 
 
 def clean(text: str) -> str:
-    """Text of a job file with control characters and terminal escapes taken out."""
+    """Text of a job file with control characters, terminal escapes and separators of lines taken out."""
     if text.isprintable():  # none of them, seen at once
         return text.strip()
-    return "".join(c if unicodedata.category(c)[0] != "C" else " " for c in text).strip()
+    return "".join(" " if _obeyed(unicodedata.category(c)) else c for c in text).strip()
+
+
+def _obeyed(category: str) -> bool:
+    """Whether characters of a Unicode category do something instead of being seen: controls, direction marks, new lines."""
+    return category[0] == "C" or category in ("Zl", "Zp")
 
 
 def in_unit(value: float, unit: str, digits: int) -> str:

@@ -217,6 +217,36 @@ def worm_contact() -> None:
     ratio("recommended cutter / numpy kernel", recommend, timed(kernel), "under 50", runs=5)
 
 
+PEAK = """\
+import resource, sys
+from setupcheck.flow import review
+from setupcheck.report.text import as_text
+as_text(review(sys.argv[1]))
+used = resource.getrusage(resource.RUSAGE_SELF)
+print(used.ru_utime + used.ru_stime, used.ru_maxrss / (1e6 if sys.platform == "darwin" else 1e3))
+"""
+
+
+def largest_job() -> None:
+    """The largest job that is read, beside the worm wheel: time of the processor, and peak memory of the whole process."""
+    from tests.bench.largest import largest
+
+    with tempfile.TemporaryDirectory() as folder:
+        big = Path(folder) / "largest.yaml"
+        big.write_text(largest(), encoding="utf-8")
+        told = [
+            subprocess.run(
+                [sys.executable, "-c", PEAK, str(path)], env=ENVIRONMENT, capture_output=True, text=True, check=True
+            ).stdout.split()
+            for path in (big, JOB)
+        ]
+    (large, high), (usual, low) = ((float(a), float(b)) for a, b in told)
+    print(
+        f"{'largest job that is read / worm wheel, processor':<58} {large:8.1f} / {usual:8.1f} s  = {large / usual:5.1f}"
+    )
+    print(f"{'the same, peak memory':<58} {high:8.0f} / {low:8.0f} MB = {high / low:5.1f}")
+
+
 if __name__ == "__main__":
     ratio(
         "setupcheck --help / import typer",
@@ -235,3 +265,4 @@ if __name__ == "__main__":
     throughput()
     whole_rule_book()
     worm_contact()
+    largest_job()
