@@ -5,7 +5,7 @@ python -m tests.docs.pages
 A page holds, in its order: a job file whole (```yaml below `<!-- job: NAME -->`), changes to it (```diff), and commands with
 their output (``` below `<!-- show: WHAT; WHAT -->`, its first line `$ setupcheck …`). WHAT picks what is quoted: `head` the first
 two lines, `all` everything, else the first line from there on that holds this text, with the lines under it that stand further
-in. What is left out is marked `…`. Sums stand in ```calc blocks, read by `tests/docs/sums.py`.
+in (`only TEXT`: that line alone). What is left out is marked `…`. Sums stand in ```calc blocks, read by `tests/docs/sums.py`.
 """
 
 from __future__ import annotations
@@ -106,11 +106,12 @@ def steps(page: str) -> dict[str, str]:
 
 @cache
 def printed(command: str, name: str, text: str) -> str:
-    """What a command prints, both streams, in a folder that holds this job file and the shipped jobs."""
+    """What a command prints, both streams, in a folder that holds this job file beside jobs/ and docs/."""
     with tempfile.TemporaryDirectory() as folder:
         if name:
             Path(folder, name).write_text(text, encoding="utf-8")
-        Path(folder, "jobs").symlink_to(ROOT / "jobs")
+        for shared in ("jobs", "docs"):
+            Path(folder, shared).symlink_to(ROOT / shared)
         run = subprocess.run(
             [sys.executable, "-m", "setupcheck", *shlex.split(command)[1:]],
             stdout=subprocess.PIPE,
@@ -135,11 +136,12 @@ def picked(lines: list[str], pick: str, start: int) -> tuple[int, int]:
     """First and last + 1 line that a pick quotes, looked for from `start` on."""
     if pick in ("all", "head"):
         return 0, (len(lines) if pick == "all" else 2)
-    first = next((i for i in range(start, len(lines)) if pick in lines[i]), None)
+    text = pick.removeprefix("only ")
+    first = next((i for i in range(start, len(lines)) if text in lines[i]), None)
     if first is None:
-        raise PageError(f"nothing printed from line {start + 1} on holds {pick!r}:\n" + "\n".join(lines))
+        raise PageError(f"nothing printed from line {start + 1} on holds {text!r}:\n" + "\n".join(lines))
     end = first + 1
-    while end < len(lines) and lines[end] and indent(lines[end]) > indent(lines[first]):
+    while pick == text and end < len(lines) and lines[end] and indent(lines[end]) > indent(lines[first]):
         end += 1
     return first, end
 

@@ -23,11 +23,13 @@ TWO: dict[type, Callable[[float, float], float]] = {
 }
 KEYS: dict[str, Callable[[float], float]] = {
     "sqrt": math.sqrt,
+    "ln": math.log,
     "sin": math.sin,
     "cos": math.cos,
     "tan": math.tan,
     "asin": math.asin,
     "atan": math.atan,
+    "floor": math.floor,
 }
 NUMBER = re.compile(r"-?\d+(?:\.(\d+))?")
 
