@@ -20,7 +20,8 @@ def command(
         Path, typer.Option("--out", "-o", help="File to write, HTML; with --drawing SVG.", show_default=False)
     ],
     drawing: Annotated[
-        str | None, typer.Option(help="Write this drawing alone, as in hold-30.", show_default=False)
+        str | None,
+        typer.Option(help="Write this drawing alone, as in hold-30; an unknown name lists all.", show_default=False),
     ] = None,
     force: Force = False,
     readings: Annotated[

@@ -1,4 +1,4 @@
-"""Whole reports and README excerpts, kept as files and compared. Run this file to write them anew:
+"""Whole reports, and excerpts of README and docs/what-comes-out.md, kept as files and compared. Run this file to write them anew:
 
 python -m tests.golden.pages
 """
@@ -31,6 +31,7 @@ SHIMMED = WHEEL.replace(
     "centre: {on: hub, by: four-jaw, runout: {at_most: 6 um, measured: 4 um, uncertainty: 1 um}}",
     "centre: {on: rim, by: shimmed-jaws, runout: 100 um}",
 )
+EXCERPTS_IN = ("README.md", "docs/what-comes-out.md")
 MISTAKES = (
     WHEEL.replace("clearance: [2 um, 8 um]", "clearance: [2 um, 8,5 um]")
     .replace("centre: {on: rim, by: soft-jaws, at: 12", "centre: {on: rimm, by: soft-jaws, at: 12")
@@ -195,21 +196,22 @@ def excerpts() -> dict[str, str]:
     }
 
 
-def readme_with_excerpts() -> str:
-    """The README with its excerpts put in."""
-    text = (ROOT / "README.md").read_text(encoding="utf-8")
+def pages_with_excerpts() -> dict[str, str]:
+    """The pages that hold excerpts, README first, with these put in; each stands in one of them, once."""
+    texts = {page: (ROOT / page).read_text(encoding="utf-8") for page in EXCERPTS_IN}
     for name, excerpt in excerpts().items():
         fence = re.compile(rf"(<!-- excerpt: {name} -->\n```\n).*?(```\n)", re.S)
-        assert len(fence.findall(text)) == 1, name
-        text = fence.sub(lambda m, e=excerpt: f"{m[1]}{e}\n{m[2]}", text)
-    return text
+        assert 1 == sum(len(fence.findall(text)) for text in texts.values()), name
+        texts = {page: fence.sub(lambda m, e=excerpt: f"{m[1]}{e}\n{m[2]}", text) for page, text in texts.items()}
+    return texts
 
 
 def write() -> None:
     """Write golden files and README excerpts anew."""
     for name, text in {**reports(), **drawings()}.items():
         (HERE / name).write_text(text, encoding="utf-8")
-    (ROOT / "README.md").write_text(readme_with_excerpts(), encoding="utf-8")
+    for page, text in pages_with_excerpts().items():
+        (ROOT / page).write_text(text, encoding="utf-8")
 
 
 if __name__ == "__main__":

@@ -1,4 +1,4 @@
-"""Whole reports against golden files, and the README's excerpts against the real thing."""
+"""Whole reports against golden files, and the excerpts of the README and of docs/ against the real thing."""
 
 from __future__ import annotations
 
@@ -17,8 +17,9 @@ def test_a_drawing_is_the_same_to_the_letter(name: str) -> None:
     assert (pages.HERE / name).read_text(encoding="utf-8") == pages.drawings()[name]
 
 
-def test_the_excerpts_of_the_readme_are_real() -> None:
-    assert (pages.ROOT / "README.md").read_text(encoding="utf-8") == pages.readme_with_excerpts()
+@pytest.mark.parametrize("page", pages.EXCERPTS_IN)
+def test_the_excerpts_of_a_page_are_real(page: str) -> None:
+    assert (pages.ROOT / page).read_text(encoding="utf-8") == pages.pages_with_excerpts()[page]
 
 
 def test_no_line_of_a_report_is_wider_than_eighty_columns() -> None:
