@@ -143,7 +143,10 @@ def _is_none(node: ast.expr) -> bool:
 
 
 def _is_text(node: ast.BinOp) -> bool:
-    return any(isinstance(n, ast.JoinedStr) or (isinstance(n, ast.Constant) and isinstance(n.value, str)) for n in ast.walk(node))
+    return any(
+        isinstance(n, ast.JoinedStr) or (isinstance(n, ast.Constant) and isinstance(n.value, str))
+        for n in ast.walk(node)
+    )
 
 
 def mutants(source: str) -> list[tuple[int, str]]:

@@ -11,14 +11,18 @@ import doctest
 import importlib
 import importlib.abc
 import importlib.machinery
+import json
 import os
 import resource
 import sys
+import time
 import traceback
 import types
-from collections.abc import Sequence
+from collections.abc import Iterator, Mapping, Sequence
 from dataclasses import dataclass
 from pathlib import Path
+
+import pytest
 
 ROOT = Path(__file__).parents[2]
 EXAMPLES = 3
@@ -64,7 +68,15 @@ def file_of(name: str) -> Path:
 
 
 class Few:
-    """A plugin of pytest: few examples of property tests, the slow ones left out."""
+    """A plugin of pytest: few examples of property tests, the slow ones left out, the quick ones first.
+
+    known   processor seconds of each test of the sources as they are; where there are none yet, they go into `path`
+    budget  tests are taken, quickest first, until they need so many seconds together
+    """
+
+    def __init__(self, known: Mapping[str, float], path: str = "", budget: float = 0.0) -> None:
+        self.known, self.path, self.budget = known, path, budget
+        self.spent: dict[str, float] = {}
 
     def pytest_collection_modifyitems(self, items: list) -> None:  # type: ignore[type-arg]
         from hypothesis import settings
@@ -75,22 +87,51 @@ class Few:
             kept = getattr(inner, "_hypothesis_internal_use_settings", None)
             if kept is not None:
                 inner._hypothesis_internal_use_settings = settings(kept, max_examples=EXAMPLES)
+        if self.known:
+            items.sort(key=lambda i: self.known.get(i.nodeid, 0.0))
+            left = self.budget
+            taken = []
+            for item in items:
+                left -= self.known.get(item.nodeid, 0.0)
+                if left >= 0.0:
+                    taken.append(item)
+            items[:] = taken
+
+    @pytest.hookimpl(wrapper=True)
+    def pytest_runtest_protocol(self, item: pytest.Item) -> Iterator[None]:
+        started = time.process_time()
+        done = yield
+        self.spent[item.nodeid] = time.process_time() - started
+        return done
+
+    def pytest_sessionfinish(self) -> None:
+        if self.path:
+            Path(self.path).write_text(json.dumps(self.spent), encoding="utf-8")
 
 
 def preload() -> None:
     """What every child needs and no mutant touches: loaded once. Nothing of the project itself."""
     os.environ.setdefault("OPENBLAS_NUM_THREADS", "1")
-    for name in ("numpy", "scipy.stats", "scipy.integrate", "scipy.optimize", "yaml", "pydantic", "hypothesis", "pytest"):
+    for name in (
+        "numpy",
+        "scipy.stats",
+        "scipy.integrate",
+        "scipy.optimize",
+        "yaml",
+        "pydantic",
+        "hypothesis",
+        "pytest",
+    ):
         importlib.import_module(name)
     assert not any(n == "setupcheck" or n.startswith("setupcheck.") for n in sys.modules)
 
 
-def run(name: str, tree: ast.Module | None, tests: Sequence[str], *, seconds: int) -> Ended:
+def run(name: str, tree: ast.Module | None, tests: Sequence[str], few: Few, *, seconds: int) -> Ended:
     """One child: the mutant of a module (None: the module as it is) against its doctests and tests."""
     before = resource.getrusage(resource.RUSAGE_CHILDREN)
     child = os.fork()
     if child == 0:
-        _live(name, tree, tests, seconds)
+        _live(name, tree, tests, few, seconds)
     _, status = os.waitpid(child, 0)
     used = resource.getrusage(resource.RUSAGE_CHILDREN)
     spent = used.ru_utime + used.ru_stime - before.ru_utime - before.ru_stime
@@ -100,7 +141,7 @@ def run(name: str, tree: ast.Module | None, tests: Sequence[str], *, seconds: in
     return Ended(code != 0, {0: "", 2: "import", 3: "doctest"}.get(code, "tests"), spent)
 
 
-def _live(name: str, tree: ast.Module | None, tests: Sequence[str], seconds: int) -> None:
+def _live(name: str, tree: ast.Module | None, tests: Sequence[str], few: Few, seconds: int) -> None:
     """In the child; never returns. Exit code 0: nothing was noticed."""
     code = 1
     try:
@@ -110,7 +151,7 @@ def _live(name: str, tree: ast.Module | None, tests: Sequence[str], seconds: int
             nowhere = os.open(os.devnull, os.O_WRONLY)
             os.dup2(nowhere, 1)
             os.dup2(nowhere, 2)
-        code = _judged(name, tree, tests)
+        code = _judged(name, tree, tests, few)
     except BaseException:
         traceback.print_exc()
     finally:
@@ -118,9 +159,7 @@ def _live(name: str, tree: ast.Module | None, tests: Sequence[str], seconds: int
         os._exit(code)
 
 
-def _judged(name: str, tree: ast.Module | None, tests: Sequence[str]) -> int:
-    import pytest
-
+def _judged(name: str, tree: ast.Module | None, tests: Sequence[str], few: Few) -> int:
     if tree is not None:
         sys.meta_path.insert(0, Hook(name, tree))
     os.chdir(ROOT)
@@ -132,4 +171,4 @@ def _judged(name: str, tree: ast.Module | None, tests: Sequence[str]) -> int:
         return 3
     loaded_before = "ignore::pytest.PytestAssertRewriteWarning"  # hypothesis was, before pytest could look at it
     options = ["-x", "-q", "-p", "no:cacheprovider", "-p", "no:xdist", "-W", loaded_before]
-    return int(pytest.main([*options, *tests], plugins=[Few()]))
+    return int(pytest.main([*options, *tests], plugins=[few]))
