@@ -84,7 +84,8 @@ def test_the_chance_strays_from_the_exact_one_as_far_as_its_standard_error_says(
 def test_four_times_the_draws_halve_the_error(case: str) -> None:
     exact = CASES[case][2]
     off = [
-        math.sqrt(np.mean([(float(drawn(case, s, n).chance or 0.0) - exact) ** 2 for s in range(STREAMS)])) for n in COUNTS
+        math.sqrt(np.mean([(float(drawn(case, s, n).chance or 0.0) - exact) ** 2 for s in range(STREAMS)]))
+        for n in COUNTS
     ]
     slope = np.polyfit(np.log(COUNTS), np.log(off), 1)[0]
     # an rms of 60 strays is known to 1/sqrt(2 60) = 9 %; over a factor of 64 in draws that leaves the slope within 0.03

@@ -133,7 +133,9 @@ CORNERS = [
 
 
 @pytest.mark.parametrize(("size", "teeth", "errors"), CORNERS)
-def test_every_corner_ends_with_a_verdict_and_numbers_in_order(drawn: Node, size: float, teeth: int, errors: float) -> None:
+def test_every_corner_ends_with_a_verdict_and_numbers_in_order(
+    drawn: Node, size: float, teeth: int, errors: float
+) -> None:
     ends_well(extreme(drawn, size=size, teeth=teeth, errors=errors))
 
 
