@@ -14,7 +14,7 @@ from setupcheck.quantities.shop import Floor
 from setupcheck.record import record
 
 LARGEST_LEAN = 0.1
-"""Lean [rad] up to which angles are small: at it a cosine leaves out 0.5 %, a sine 0.2 %. Source: series; our screening choice."""
+"""Lean [rad] up to which angles are small: there a cosine leaves out 0.5 %, a sine 0.2 %. Source: series; our choice."""
 LARGEST_ECCENTRICITY = 0.1
 """Eccentricity over radius up to which a ring is only shifted: at it pitch leaves out 5 %. Source: our screening choice."""
 

@@ -46,7 +46,7 @@ def extreme(job: Node, *, size: float, teeth: int, errors: float) -> Node:
             return 1
         if isinstance(value, int | float) and name in SIZES:
             return value * size
-        if not isinstance(value, str) or "require" in path and name in LIMITS:
+        if not isinstance(value, str) or ("require" in path and name in LIMITS):
             return value
         if "±" in value:
             middle, _, error = value.partition("±")
