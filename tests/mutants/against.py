@@ -46,6 +46,7 @@ DIVISION = (
 )
 TESTS: dict[str, tuple[str, ...]] = {
     "setupcheck.physics.interference": (
+        f"{UNIT}/physics/test_joints_by_hand.py",
         f"{UNIT}/physics/test_interference.py",
         f"{UNIT}/physics/test_laws_of_a_joint.py",
         f"{PUBLISHED}/test_interference_examples.py",

@@ -321,3 +321,27 @@ def test_places_that_a_figure_is_the_worst_of() -> None:
     assert [drawn(f) for f in alternatives(Stock(5.0, ends))] == [[4.0], [3.0]]
     single = Length(real(1.0))
     assert alternatives(single) == (single,)
+
+
+def test_coordinates_of_holes_change_a_chord_by_the_worst_two_neighbours() -> None:
+    """Each hole draws one error with a share round the circle and one outwards; every corner of all five is tried."""
+    n, radius, bound = 5, 30.0, 0.004
+    around, outward = (0.9, -0.3, 0.5, 0.1, -0.8), (0.2, 0.7, -0.6, 1.0, 0.4)
+    scatter = Scatter(Cause("x", "length", high=bound), "coordinate", bound, around=around, outward=outward)
+    worst = 0.0
+    for signs in product((-1, 1), repeat=n):
+        points = [
+            cmath.exp(1j * math.tau * j / n) * (radius + bound * s * (outward[j] + 1j * around[j]))
+            for j, s in enumerate(signs)
+        ]
+        nominal = 2.0 * radius * math.sin(math.pi / n)
+        worst = max(worst, *(abs(abs(points[j] - points[j - 1]) - nominal) for j in range(n)))
+    figure = HoleChord(Pattern(n, radius, scatter=(scatter,)))
+    second_order = 4.0 * bound**2 / radius
+    assert figure.base() + sum(p.up for p in figure.pushes()) == pytest.approx(worst, abs=second_order)
+    (push,) = PitchCircle(Pattern(n, radius, scatter=(scatter,))).pushes()
+    assert push.up == push.down == pytest.approx(2.0 * bound * sum(map(abs, outward)) / n)
+    pitch = Tooth(Account(), Pattern(n, radius, scatter=(scatter,)), flank=False, stepwise=True)
+    assert sum(p.up for p in pitch.pushes()) == pytest.approx(bound * max(0.9 + 0.3, 0.3 + 0.5, 0.5 + 0.1, 0.9, 1.7))
+    ring = Tooth(Account(), Pattern(n, radius, scatter=(scatter,)), flank=False, stepwise=False)
+    assert sum(p.up for p in ring.pushes()) == pytest.approx(bound * (0.9 + 0.8))
