@@ -27,10 +27,8 @@ LEDGER = (
     f"{PUBLISHED}/test_random_walk.py",
     f"{PUBLISHED}/test_shaft_stack.py",
     f"{PUBLISHED}/test_folded_harmonics.py",
-    f"{PUBLISHED}/test_small_displacements.py",
     f"{UNIT}/ledger/test_laws_of_a_swing.py",
     f"{UNIT}/ledger/test_laws_of_the_route.py",
-    "tests/rigidbody",
 )
 DIVISION = (
     f"{UNIT}/division/test_by_hand.py",
@@ -42,7 +40,6 @@ DIVISION = (
     f"{PUBLISHED}/test_sighting_instruments.py",
     f"{PUBLISHED}/test_pitch_measurement.py",
     f"{PUBLISHED}/test_division_test.py",
-    f"{PUBLISHED}/test_planted_divisions.py",
 )
 TESTS: dict[str, tuple[str, ...]] = {
     "setupcheck.physics.interference": (

@@ -345,3 +345,45 @@ def test_coordinates_of_holes_change_a_chord_by_the_worst_two_neighbours() -> No
     assert sum(p.up for p in pitch.pushes()) == pytest.approx(bound * max(0.9 + 0.3, 0.3 + 0.5, 0.5 + 0.1, 0.9, 1.7))
     ring = Tooth(Account(), Pattern(n, radius, scatter=(scatter,)), flank=False, stepwise=False)
     assert sum(p.up for p in ring.pushes()) == pytest.approx(bound * (0.9 + 0.8))
+
+
+def test_what_each_error_of_holes_does_to_one_chord() -> None:
+    """Six holes on 30 mm: neighbours 60 deg apart, so an arc counts cos 30, an error outwards of both 2 sin 30 = 1."""
+    wave, drift = Cause("wave", "disc", high=1e-4), Cause("drift", "length", high=2e-4)
+    size = Account.of(Cause("size", "length", high=0.004)) * 0.5
+    ring = Pattern(
+        6,
+        30.0,
+        periodic=(Periodic(wave, 2),),
+        shaped=(Shaped(drift, (0.0, 0.2, 0.4, 0.6, 0.8, 1.0)),),
+        scatter=(
+            Scatter(Cause("angle", "length", high=1e-5), "angle", 1e-5),
+            Scatter(Cause("round", "length", high=0.003), "tangential", 0.003),
+            Scatter(Cause("out", "length", high=0.002), "radial", 0.002),
+        ),
+        radial=size,
+    )
+    found = {p.cause.key: p.up for p in HoleChord(ring).pushes()}
+    arc = math.cos(math.pi / 6)
+    assert found == pytest.approx(
+        {
+            # two waves round six places: neighbours 120 deg of a wave apart, chord of a unit circle 2 sin 60
+            "wave": arc * 30.0 * 1e-4 * 2.0 * math.sin(math.pi / 3),
+            "drift": arc * 30.0 * 2e-4 * 1.0,  # from the last place back to the first
+            "angle": arc * 30.0 * 2e-5,
+            "round": arc * 0.006,
+            "out": 0.002,
+            "size": 0.002,
+        }
+    )
+    position = {p.cause.key: p.up for p in HolePosition(Account(), ring, Account()).pushes()}
+    assert position == pytest.approx(
+        {
+            "wave": 2.0 * 30.0 * 1e-4,
+            "drift": 2.0 * 30.0 * 2e-4,
+            "angle": 2.0 * 30.0 * 1e-5,
+            "round": 0.006,
+            "out": 0.004,
+            "size": 0.004,
+        }
+    )
