@@ -239,3 +239,12 @@ def test_a_cell_of_degrees_minutes_and_seconds_is_never_a_bare_number() -> None:
     for bare in ("5", "12.5"):
         with pytest.raises(BadCell):
             read(bare)
+
+
+@pytest.mark.parametrize("unit", [1e-3, 5.0, 300.0])
+def test_another_unit_changes_no_interval(unit: float) -> None:
+    for vector in ([0.6, 0.0], [2.5, -1.0], [8.0, 3.0]):
+        plain = length_of(np.array(vector), np.eye(2), 9.0)
+        scaled = length_of(unit * np.array(vector), unit**2 * np.eye(2), 9.0)
+        assert (scaled.low, scaled.high) == pytest.approx((unit * plain.low, unit * plain.high), rel=1e-6)
+        assert scaled.within == (None if plain.within is None else pytest.approx(plain.within, rel=1e-6))

@@ -30,9 +30,11 @@ from setupcheck.ledger.figures import (
     vector_pushes,
 )
 from setupcheck.ledger.gaps import GapSymmetry, RunOff
+from setupcheck.ledger.harmonic import planned_wave, towards
 from setupcheck.ledger.heads import share_left
 from setupcheck.ledger.holes import HoleChord, HolePosition, PitchCircle
-from setupcheck.ledger.route import Pattern, Periodic, Scatter, Shaped
+from setupcheck.ledger.route import Pattern, Periodic, Scatter, Shaped, index_error
+from setupcheck.ledger.teeth import oblique, oblique_turn
 
 NEAR = {"rel": 2e-6, "abs": 2e-8}
 """Single precision of the draws."""
@@ -387,3 +389,63 @@ def test_what_each_error_of_holes_does_to_one_chord() -> None:
             "size": 0.004,
         }
     )
+
+
+def test_the_division_error_that_clocks_a_part_by_hand() -> None:
+    assert index_error(Pattern(4, 10.0), 1).known() == 0
+    for turn in (1, -1):
+        ring = pattern(turn)
+        for number, arc in enumerate(index_arcs(turn), 1):
+            assert index_error(ring, number).known().real == pytest.approx(arc / RADIUS)
+    own = Scatter(Cause("own", "length", high=0.003), "tangential", 0.003)
+    assert index_error(Pattern(4, 10.0, scatter=(own,)), 2).largest() == pytest.approx(0.0003)
+    out = Scatter(Cause("out", "length", high=0.003), "radial", 0.003)
+    assert index_error(Pattern(4, 10.0, scatter=(out,)), 2).terms == {}
+
+
+@pytest.mark.parametrize("right_hand", [True, False])
+def test_a_leaning_ring_of_oblique_gaps_shifts_each_gap_by_what_it_wobbles_times_its_lead(right_hand: bool) -> None:
+    """A gap that stands w too high and runs at the lead angle is met beside its place by w tan(gamma), one way or the other."""
+    ring, gamma = Pattern(9, RADIUS), math.radians(6.0)
+    lean = known("t", LEAN)
+    seen = oblique(lean, ring, lead_angle=gamma, right_hand=right_hand)
+    arcs = []
+    for j in range(9):
+        u = cmath.exp(1j * math.tau * j / 9)
+        wobble = -RADIUS * (LEAN.conjugate() * u).real
+        arcs.append((OFFSET * (1j * u).conjugate()).real - (1 if right_hand else -1) * wobble * math.tan(gamma))
+    figure = Tooth(known("e", OFFSET), ring, flank=False, stepwise=False, oblique=seen)
+    assert drawn(figure) == [pytest.approx(max(arcs) - min(arcs), **NEAR)]
+    assert oblique_turn(ring, side=0, driven=True) == oblique_turn(ring, side=0, driven=False) == 1
+
+
+def test_coordinates_that_cancel_on_one_flank_add_up_on_the_other() -> None:
+    """Each place draws one error: a round the circle and -a / tan(alpha) outwards; a + tan(alpha) out is nothing, or 2 a."""
+    around = tuple(0.1 * (j + 1) for j in range(COUNT))
+    outward = tuple(-a / math.tan(ALPHA) for a in around)
+    own = Scatter(Cause("own", "length", high=0.002), "coordinate", 0.002, around=around, outward=outward)
+    figure = Tooth(Account(), Pattern(COUNT, RADIUS, pressure_angle=ALPHA, scatter=(own,)), flank=True, stepwise=False)
+    draws = Draws(5000)
+    nothing, twice = (planned_wave(figure, 2, draws, side=side) for side in (1, -1))
+    assert np.abs(nothing.drawn).max() < 1e-9
+    # 2/N sum of 2 a_j x_j cos: variance 4/N^2 4 a_j^2 b^2/3 cos^2, by hand
+    expected = sum(
+        (4.0 * a / COUNT) ** 2 * 0.002**2 / 3.0 * math.cos(2 * math.tau * j / COUNT) ** 2 for j, a in enumerate(around)
+    )
+    assert twice.parts[0].covariance[0][0] == pytest.approx(expected, rel=0.1)
+
+
+def test_a_planned_wave_is_the_fourier_sum_of_its_known_errors() -> None:
+    ring = pattern(1)
+    figure = Tooth(Account(), ring, flank=False, stepwise=False)
+    found = planned_wave(figure, 3, Draws(4))
+    whole = sum(
+        2.0 / COUNT * RADIUS * (ROUNDING[j] + DRIFT * SHAPE[j]) * cmath.exp(3j * places(1)[j]) for j in range(COUNT)
+    )
+    assert found.middle == pytest.approx(whole, rel=1e-5)
+    assert complex(found.drawn[0]) == pytest.approx(whole, rel=1e-5)
+    assert 0.0 <= towards(whole, 3) < math.tau / 3
+    assert cmath.exp(3j * towards(whole, 3)) == pytest.approx(whole / abs(whole))
+    for harmonic in (0, 4):
+        with pytest.raises(ValueError, match="cannot tell"):
+            planned_wave(figure, harmonic, Draws(4))

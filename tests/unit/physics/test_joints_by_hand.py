@@ -135,3 +135,17 @@ def test_no_strength_and_no_safety_below_one(strength: float, safety: float) -> 
 def test_nothing_presses_where_nothing_interferes() -> None:
     assert fits.joint_pressure(SOLID, interference=-0.01) == 0.0
     assert fits.joint_pressure(SOLID, interference=0.05) == pytest.approx(0.05 / 50.0 * 200e3 / (5.0 / 3.0 + 1.0))
+
+
+def test_small_joints_and_bright_surfaces_are_joints_too() -> None:
+    tiny = {"friction": 0.12, "diameter": 0.5, "length": 0.5, "slip_factor": 1.0}
+    area = math.pi * 0.25
+    assert fits.pressure_to_hold(torque=0.0, axial_force=1.0, **tiny) == pytest.approx(1.0 / (0.12 * area))
+    assert fits.axial_capacity(10.0, **tiny) == pytest.approx(1.2 * area)
+    assert (
+        fits.axial_capacity(10.0, **tiny | {"length": 0.0})
+        == fits.axial_capacity(10.0, **tiny | {"friction": 0.0})
+        == 0.0
+    )
+    assert fits.smoothing_loss(hub_roughness=0.0, shaft_roughness=0.0) == 0.0
+    assert fits.hub_pressure_limit(SOLID, strength=0.5, safety=1.0) == pytest.approx(0.375 / math.sqrt(3.0))
