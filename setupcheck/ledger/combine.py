@@ -247,6 +247,10 @@ class Ends:
     low: float
     high: float
 
+    def within(self, value: float) -> float:
+        """The value, or the end that it passes: draws are rounded to single precision, ends are not."""
+        return min(max(value, self.low), self.high)
+
 
 @record
 class Share:
@@ -300,7 +304,7 @@ def combine(figure: Figure, draws: Draws, *, low: float | None, high: float | No
         beyond /= 2.0
     ordered = np.sort(values, axis=1)
     low_end, high_end = _quantile(ordered[0], beyond), _quantile(ordered[-1], 1.0 - beyond)
-    likely = Ends(max(low_end, worst.low) if figure.signed else 0.0, min(high_end, worst.high))
+    likely = Ends(worst.within(low_end) if figure.signed else 0.0, worst.within(high_end))
     chance, error = _chance(least, most, worst, low, high)
     total = sum(_towards(p, towards_high) for p in pushes) or 1.0
     shares = sorted(

@@ -211,7 +211,7 @@ class Stock:
         return self._vector().undetermined()
 
     def sample(self, draws: Draws) -> Reals:
-        return np.asarray(self.depth - self._vector().sample(draws))
+        return np.asarray(self.depth - self._vector().sample(draws).astype(np.float64))
 
 
 @record(eq=False)

@@ -8,10 +8,15 @@ from setupcheck.jobfile.names import Ref
 from setupcheck.ledger.account import Account
 from setupcheck.ledger.figures import Figure
 from setupcheck.ledger.route import State
-from setupcheck.quantities.book import Open
+from setupcheck.quantities.book import Open, OutOfRange
 from setupcheck.quantities.requirements import Stack
 from setupcheck.quantities.shop import Floor
 from setupcheck.record import record
+
+LARGEST_LEAN = 0.1
+"""Lean [rad] up to which angles are small: there a cosine leaves out 0.5 %, a sine 0.2 %. Source: series; our choice."""
+LARGEST_ECCENTRICITY = 0.1
+"""Eccentricity over radius up to which a ring is only shifted: at it pitch leaves out 5 %. Source: our screening choice."""
 
 
 @record
@@ -60,6 +65,31 @@ def pair(floor: Floor, stack: Stack) -> tuple[State, State] | Open:
 
 
 def second_order(*, lean: Account, lever: float) -> float:
-    """L t^2 / 2 for the worst lean [mm]: what the first-order treatment leaves out. Source: cosine series."""
+    """L t^2 / 2 for the worst lean [mm]: what the first-order treatment leaves out. Source: cosine series.
+
+    Validity: leans up to LARGEST_LEAN.  Raises: OutOfRange beyond it.
+    """
     worst = lean.largest()
-    return lever * worst**2 / 2.0 if math.isfinite(worst) else 0.0
+    if not math.isfinite(worst):  # something is missing, which is told first
+        return 0.0
+    if worst > LARGEST_LEAN:
+        raise OutOfRange(
+            f"the surfaces may lean by {math.degrees(worst):.3g} deg to each other: angles are taken as small, up to "
+            f"{math.degrees(LARGEST_LEAN):.1f} deg. Look for a wrong reading or a short base"
+        )
+    return lever * worst**2 / 2.0
+
+
+def beside_its_axis(offset: Account, radius: float) -> Account:
+    """The eccentricity of a ring of teeth or holes, as it is, where it is small beside the ring.
+
+    Validity: e up to LARGEST_ECCENTRICITY of the radius; pitch leaves e / 2 r of it out.  Raises: OutOfRange beyond it.
+    Source: sine series of a place seen from a centre beside the ring, derived here.
+    """
+    worst = offset.largest()
+    if math.isfinite(worst) and worst > LARGEST_ECCENTRICITY * radius:
+        raise OutOfRange(
+            f"the ring may be {worst:.4g} mm off its axis with a radius of {radius:.4g} mm: eccentricities are taken as "
+            f"small, up to {LARGEST_ECCENTRICITY:g} of the radius. Look for a wrong reading"
+        )
+    return offset

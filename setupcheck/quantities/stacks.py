@@ -11,12 +11,12 @@ from setupcheck.ledger.figures import Figure
 from setupcheck.ledger.route import State
 from setupcheck.quantities import backlash_read
 from setupcheck.quantities.backlash import backlash
-from setupcheck.quantities.book import Open
+from setupcheck.quantities.book import Open, OutOfRange
 from setupcheck.quantities.causes import BARE
 from setupcheck.quantities.contact_share import contact
 from setupcheck.quantities.gaps import figure as of_gaps
 from setupcheck.quantities.mid_plane import mid_plane
-from setupcheck.quantities.relations import Built, pair, second_order, state
+from setupcheck.quantities.relations import Built, beside_its_axis, pair, second_order, state
 from setupcheck.quantities.requirements import Stack
 from setupcheck.quantities.running import as_it_runs
 from setupcheck.quantities.shares import torque
@@ -29,7 +29,10 @@ def build(floor: Floor, stack: Stack) -> Built | Open:
 
     Raises: JobError where the surfaces cannot have such a figure.
     """
-    made = _FIGURES[stack.require.what](floor, stack)
+    try:
+        made = _FIGURES[stack.require.what](floor, stack)
+    except OutOfRange as why:
+        return Open(because=str(why))
     if isinstance(made, Open):
         return made
     missing = made.figure.undetermined()
@@ -109,7 +112,7 @@ def _teeth(floor: Floor, stack: Stack) -> Built | Open:
     if isinstance(seen, Open):
         return seen
     figure = figures.Tooth(
-        (g.offset - r.axis_at(g.z)) * seen,
+        beside_its_axis(g.offset - r.axis_at(g.z), pattern.radius) * seen,
         pattern,
         flank=flank,
         stepwise=what == "single-pitch",
@@ -180,7 +183,7 @@ def _backlash_swing(floor: Floor, stack: Stack) -> Built | Open:
     g, r = found
     if g.pattern is None or g.pattern.pressure_angle is None:
         return Open((_angle_of(floor, g),))
-    offset = g.offset - r.axis_at(g.z)
+    offset = beside_its_axis(g.offset - r.axis_at(g.z), g.pattern.radius)
     swing = teeth.backlash_swing(1.0, g.pattern.pressure_angle)  # for each mm of eccentricity
     figure: Figure = figures.Vector((offset,), swing)
     if _scatters_outwards(g):

@@ -117,9 +117,29 @@ def _working(loaded: LoadedJob, book: Book, quantity: Quantity, scope: Scope) ->
         yield from _stated(book, quantity.of)
     for argument, name in quantity.inputs.items():
         yield from _input(loaded, book, scope, argument, name)
+    if quantity.name == "stack.chance":
+        yield from _strayed(book, scope)
     if isinstance(answer, Known):
         for told in rests_in_words(sorted(answer.rests_on)):
             yield from wrap(told[:1].lower() + told[1:], first="  ", rest="    ")
+
+
+def _strayed(book: Book, scope: Scope) -> Iterator[str]:
+    """How far drawing alone may have moved a chance: its standard error."""
+    result, draws = book.get("stack.combined", scope), book.get("route.draws", scope)
+    if not (isinstance(result, Known) and isinstance(result.value, Result)):
+        return
+    if not (isinstance(draws, Known) and isinstance(draws.value, Draws)):
+        return
+    error = result.value.combined.chance_error
+    if error:
+        yield from wrap(
+            f"of {draws.value.trials} jobs drawn: standard error {error * 100.0:.2f} %, falling with the root of their number",
+            first="  ",
+            rest="    ",
+        )
+    elif error is not None:
+        yield "  no draw is needed: even the worst case meets the limits"
 
 
 def _formula(told: tuple[str, str], first: str = "  ") -> Iterator[str]:

@@ -6,10 +6,11 @@ import math
 
 import pytest
 
+from setupcheck.jobfile.service import Warmth
 from setupcheck.physics import interference as fits
 from setupcheck.quantities.book import Open
 from setupcheck.quantities.pairing import RZ_PER_RA, Pair
-from setupcheck.quantities.strength import ON_BREAKING
+from setupcheck.quantities.strength import ON_BREAKING, yields_below
 
 from .joint_text import answer, changed, finding, number, reviewed, value
 
@@ -169,3 +170,15 @@ def test_no_elastic_figure_is_told_of_a_sintered_ring() -> None:
         assert "sintered metal crushes" in found.because
     assert "fail" == finding(text, "FIT-010").verdict
     assert "open" == finding(text, "FIT-003").verdict == finding(text, "FIT-004").verdict
+
+
+def test_a_pair_at_its_elastic_limit_already_has_no_colder_temperature_to_name() -> None:
+    pair = value(changed(), "fit.pair")
+    assert isinstance(pair, Pair)
+    assert yields_below(pair, 0.04, (0.04, "hub")) is None
+    just = yields_below(pair, 0.04 - 1e-6, (0.04, "hub"))
+    assert just is None or just < 20.0
+    # bronze on steel grips tighter by D (alpha_hub - alpha_shaft) for each kelvin: a room of 10 K of it is used up at 10 degC
+    per_kelvin = pair.at(0.0, "strength", Warmth(19.0, 19.0))
+    assert per_kelvin > 0.0
+    assert yields_below(pair, 0.04 - 10.0 * per_kelvin, (0.04, "hub")) == pytest.approx(10.0)

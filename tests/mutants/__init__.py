@@ -1,0 +1,1 @@
+"""Mutants: small wrong changes to the core, each of which some test should notice."""

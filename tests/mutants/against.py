@@ -1,0 +1,72 @@
+"""Which tests a mutant of each module has to get past: those of its subject, quickest first."""
+
+from __future__ import annotations
+
+from pathlib import Path
+
+from tests.mutants.running import ROOT
+
+UNIT, PUBLISHED = "tests/unit", "tests/published"
+JOINTS = (
+    f"{UNIT}/quantities/test_joint_strength.py",
+    f"{UNIT}/quantities/test_joint_sections.py",
+    f"{UNIT}/quantities/test_through.py",
+    f"{UNIT}/quantities/test_pressing.py",
+    f"{UNIT}/quantities/test_pressed_and_moved.py",
+    f"{UNIT}/quantities/test_joint_missing.py",
+    f"{UNIT}/quantities/test_choosing.py",
+    f"{UNIT}/quantities/test_joint_states.py",
+    f"{PUBLISHED}/test_joints_through_job_files.py",
+)
+LEDGER = (
+    f"{UNIT}/ledger/test_by_hand.py",
+    f"{UNIT}/ledger/test_gaps.py",
+    f"{UNIT}/ledger/test_kept_devices.py",
+    f"{UNIT}/ledger/test_waves_by_cause.py",
+    f"{UNIT}/ledger/test_laws_of_the_figures.py",
+    f"{PUBLISHED}/test_random_walk.py",
+    f"{PUBLISHED}/test_shaft_stack.py",
+    f"{PUBLISHED}/test_folded_harmonics.py",
+    f"{UNIT}/ledger/test_laws_of_a_swing.py",
+    f"{UNIT}/ledger/test_laws_of_the_route.py",
+)
+DIVISION = (
+    f"{UNIT}/division/test_by_hand.py",
+    f"{UNIT}/division",
+    f"{UNIT}/test_backlash_wave.py",
+    f"{UNIT}/test_prove_out_fit.py",
+    f"{PUBLISHED}/test_index_tables.py",
+    f"{PUBLISHED}/test_npl_dem_es_011.py",
+    f"{PUBLISHED}/test_sighting_instruments.py",
+    f"{PUBLISHED}/test_pitch_measurement.py",
+    f"{PUBLISHED}/test_division_test.py",
+)
+TESTS: dict[str, tuple[str, ...]] = {
+    "setupcheck.physics.interference": (
+        f"{UNIT}/physics/test_joints_by_hand.py",
+        f"{UNIT}/physics/test_interference.py",
+        f"{UNIT}/physics/test_laws_of_a_joint.py",
+        f"{PUBLISHED}/test_interference_examples.py",
+    ),
+    "setupcheck.physics.heating": (
+        f"{UNIT}/physics/test_heating_of_joints.py",
+        f"{PUBLISHED}/test_heating.py",
+        f"{PUBLISHED}/test_cooling_by_integration.py",
+    ),
+    "setupcheck.quantities.pairing": JOINTS,
+    "setupcheck.quantities.strength": JOINTS,
+}
+AREAS = {
+    "ledger": LEDGER,
+    "division": DIVISION,
+}
+
+
+def modules() -> dict[str, tuple[str, ...]]:
+    """Every module of the core, with its tests."""
+    found = dict(TESTS)
+    for area, tests in AREAS.items():
+        for path in sorted((ROOT / "setupcheck" / area).glob("*.py")):
+            if path.stem != "__init__":
+                found[f"setupcheck.{area}.{path.stem}"] = tests
+    return {name: tuple(t for t in tests if Path(ROOT / t).exists()) for name, tests in found.items()}
