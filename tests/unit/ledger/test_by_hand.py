@@ -29,6 +29,7 @@ from setupcheck.ledger.figures import (
     Vector,
     alternatives,
     merged,
+    taken_away,
     vector_pushes,
 )
 from setupcheck.ledger.gaps import GapSymmetry, RunOff
@@ -459,10 +460,10 @@ def test_bounds_of_rounded_and_drifting_divisions() -> None:
     position = combine(HolePosition(Account(), rounded, Account()), Draws(4), low=None, high=1.0, confidence=0.95)
     assert position.worst.high == pytest.approx(0.006)
     drift = Cause("drift", "length", high=2e-4)
-    ring = Pattern(4, 30.0, shaped=(Shaped(drift, (0.0, 0.25, 0.5, 1.0)),))
+    ring = Pattern(4, 30.0, shaped=(Shaped(drift, (0.0, 0.25, 0.5, 0.8)),))
     for stepwise in (True, False):
         (push,) = Tooth(Account(), ring, flank=False, stepwise=stepwise, factor=0.5).pushes()
-        assert push.up == pytest.approx(0.5 * 30.0 * 2e-4)
+        assert push.up == pytest.approx(0.5 * 30.0 * 2e-4 * 0.8)
 
 
 def test_known_parts_of_one_cause_add_up_and_stock_loses_them() -> None:
@@ -470,7 +471,9 @@ def test_known_parts_of_one_cause_add_up_and_stock_loses_them() -> None:
     (one,) = merged([Push(cause, 1.0, 2.0, 0.5)], [Push(cause, 3.0, 4.0, 0.25)])
     assert (one.down, one.up, one.known) == (4.0, 6.0, 0.75)
     found = combine(Stock(0.25, (known("e", 0.03),)), Draws(4), low=0.0, high=None, confidence=0.95)
-    assert (found.worst.low, found.rss.low, found.likely.low) == pytest.approx((0.22, 0.22, 0.22))
+    assert (found.worst.low, found.rss.low, found.likely.low) == pytest.approx((0.22,) * 3)
+    (less,) = taken_away([Push(cause, 0.01, 0.03, 0.02)])
+    assert (less.down, less.up, less.known) == (0.03, 0.0, -0.02)
 
 
 def test_a_turn_nobody_recorded_makes_a_ring_of_what_is_known() -> None:
