@@ -258,5 +258,5 @@ def test_a_direction_that_scatters_alone_counts_four_times() -> None:
 def test_a_cell_in_another_unit_than_its_column_is_refused() -> None:
     assert reader("reading_deg")("12.5") == pytest.approx(math.radians(12.5))
     assert reader("reading_deg")("12.5 deg") == pytest.approx(math.radians(12.5))
-    with pytest.raises(BadCell, match="Write 11.25"):
+    with pytest.raises(BadCell, match=r"Write 11\.25"):
         reader("reading_deg")("12.5 gon")
