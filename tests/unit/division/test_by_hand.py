@@ -248,3 +248,15 @@ def test_another_unit_changes_no_interval(unit: float) -> None:
         scaled = length_of(unit * np.array(vector), unit**2 * np.eye(2), 9.0)
         assert (scaled.low, scaled.high) == pytest.approx((unit * plain.low, unit * plain.high), rel=1e-6)
         assert scaled.within == (None if plain.within is None else pytest.approx(plain.within, rel=1e-6))
+
+
+def test_a_direction_that_scatters_alone_counts_four_times() -> None:
+    back = figures((np.zeros(2), np.zeros(2)), (np.zeros(2), np.array([3.0, 0.0])), 2)
+    assert back.R == 12.0
+
+
+def test_a_cell_in_another_unit_than_its_column_is_refused() -> None:
+    assert reader("reading_deg")("12.5") == pytest.approx(math.radians(12.5))
+    assert reader("reading_deg")("12.5 deg") == pytest.approx(math.radians(12.5))
+    with pytest.raises(BadCell, match=r"Write 11\.25"):
+        reader("reading_deg")("12.5 gon")

@@ -22,11 +22,14 @@ from setupcheck.ledger.figures import (
     Length,
     MidPlane,
     OverATurn,
+    Push,
     Stock,
     Tooth,
     ToothRunOut,
     Vector,
     alternatives,
+    merged,
+    taken_away,
     vector_pushes,
 )
 from setupcheck.ledger.gaps import GapSymmetry, RunOff
@@ -449,3 +452,33 @@ def test_a_planned_wave_is_the_fourier_sum_of_its_known_errors() -> None:
     for harmonic in (0, 4):
         with pytest.raises(ValueError, match="cannot tell"):
             planned_wave(figure, harmonic, Draws(4))
+
+
+def test_bounds_of_rounded_and_drifting_divisions() -> None:
+    """Settings rounded to +-1e-4 rad on 30 mm: holes stand 3 um off, twice of that; a drift steps back at the close."""
+    rounded = Pattern(4, 30.0, rounding=(0.0, 1e-4, 0.0, -1e-4))
+    position = combine(HolePosition(Account(), rounded, Account()), Draws(4), low=None, high=1.0, confidence=0.95)
+    assert position.worst.high == pytest.approx(0.006)
+    drift = Cause("drift", "length", high=2e-4)
+    ring = Pattern(4, 30.0, shaped=(Shaped(drift, (0.0, 0.25, 0.5, 0.8)),))
+    for stepwise in (True, False):
+        (push,) = Tooth(Account(), ring, flank=False, stepwise=stepwise, factor=0.5).pushes()
+        assert push.up == pytest.approx(0.5 * 30.0 * 2e-4 * 0.8)
+
+
+def test_known_parts_of_one_cause_add_up_and_stock_loses_them() -> None:
+    cause = Cause("a", "length")
+    (one,) = merged([Push(cause, 1.0, 2.0, 0.5)], [Push(cause, 3.0, 4.0, 0.25)])
+    assert (one.down, one.up, one.known) == (4.0, 6.0, 0.75)
+    found = combine(Stock(0.25, (known("e", 0.03),)), Draws(4), low=0.0, high=None, confidence=0.95)
+    assert (found.worst.low, found.rss.low, found.likely.low) == pytest.approx((0.22,) * 3)
+    (less,) = taken_away([Push(cause, 0.01, 0.03, 0.02)])
+    assert (less.down, less.up, less.known) == (0.03, 0.0, -0.02)
+
+
+def test_a_turn_nobody_recorded_makes_a_ring_of_what_is_known() -> None:
+    angle = Cause("angle", "ring", high=1.0)
+    turned = known("e", 0.3 + 0.4j).turned_by_an_unknown_angle(angle)
+    assert turned.known() == 0
+    assert turned.largest() == pytest.approx(0.5)
+    assert angle not in Account.of(Cause("d", "disc", high=0.1)).turned_by_an_unknown_angle(angle).terms

@@ -182,3 +182,8 @@ def test_a_pair_at_its_elastic_limit_already_has_no_colder_temperature_to_name()
     per_kelvin = pair.at(0.0, "strength", Warmth(19.0, 19.0))
     assert per_kelvin > 0.0
     assert yields_below(pair, 0.04 - 10.0 * per_kelvin, (0.04, "hub")) == pytest.approx(10.0)
+
+
+def test_the_other_criteria_allow_less_of_a_ductile_joint_by_tresca_than_by_von_mises() -> None:
+    """Tresca's hexagon lies within von Mises' ellipse (any text on strength), so it yields first."""
+    assert 0.0 < number(changed(), "fit.elastic_tresca") <= number(changed(), "fit.elastic_mises")
