@@ -54,6 +54,11 @@ class Reviewed:
     verdict  "pass", "warn", "open", "fail", or "unreadable"
     data     what `as_records` says of the review; {"file", "error": [problems]} for an unreadable file
     error    text of what is wrong with an unreadable file, None for a job that was reviewed
+
+    >>> from setupcheck import Reviewed, review_many
+    >>> one = next(iter(review_many(["nowhere.yaml"])))
+    >>> isinstance(one, Reviewed), one.verdict, one.error.split(". ")[0]
+    (True, 'unreadable', 'nowhere.yaml: there is no such file')
     """
 
     path: str
@@ -77,6 +82,10 @@ def review_many(
     executor  any `concurrent.futures.Executor`, which stays open; without one, one job after another in this process
     chunk, ahead  jobs in one piece of work, pieces handed over at a time: paths may come from an endless source
     house, on, devices  as for `review`, files by their path; they act on every job
+
+    >>> from setupcheck import example, review_many
+    >>> [one.verdict for one in review_many([example("sprocket"), "nowhere.yaml"])]
+    ['pass', 'unreadable']
     """
     work = partial(
         reviewed,
