@@ -198,7 +198,7 @@ def in_order(
             future, given = waiting[0]
             try:
                 found = future.result()
-            except Exception as fault:
+            except Exception as fault:  # of the engine, each with errors of its own: told of every job it held
                 found = [lost(path, fault) for path in given]
             waiting.popleft()
             yield from found

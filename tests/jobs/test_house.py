@@ -9,16 +9,15 @@ import shutil
 from pathlib import Path
 
 import pytest
-from typer.testing import CliRunner
 
-from setupcheck.cli.main import app
-from setupcheck.errors import HouseError, SetupcheckError
+from setupcheck.errors import HouseError
 from setupcheck.flow import HOUSE_FILE, Review, house_beside, mend, read_house, review, rules, vary
 from setupcheck.quantities.judgeable import judgeable
 from setupcheck.report.json import as_data
 from setupcheck.report.text import as_text
 from setupcheck.rulebook.units import dimension_of
 from setupcheck.shipped import example, shipped
+from tests.unit.cli.calling import run
 from tests.unit.report.sample import WHEEL, changed, flat, line_of
 
 SHOP = """\
@@ -53,14 +52,6 @@ def shop(tmp_path: Path) -> Path:
     (tmp_path / "job.yaml").write_text(changed(WHEEL, LOOSE), encoding="utf-8")
     (tmp_path / "shop.yaml").write_text(SHOP, encoding="utf-8")
     return tmp_path
-
-
-def run(*arguments: str | Path) -> tuple[int, str]:
-    found = CliRunner().invoke(app, [str(a) for a in arguments])
-    if isinstance(found.exception, SetupcheckError):  # the command prints it and exits 2
-        return 2, str(found.exception)
-    assert found.exception is None or isinstance(found.exception, SystemExit), found.exception
-    return found.exit_code, found.output
 
 
 def judged(shop: Path, text: str = SHOP, **more: str) -> Review:

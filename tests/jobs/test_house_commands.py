@@ -7,10 +7,7 @@ import re
 from pathlib import Path
 
 import pytest
-from typer.testing import CliRunner
 
-from setupcheck.cli.main import app
-from setupcheck.errors import SetupcheckError
 from setupcheck.flow import HOUSE_FILE, mend, review
 from setupcheck.jobfile.changing import Change
 from setupcheck.report.index_table import as_index_table
@@ -18,16 +15,8 @@ from setupcheck.report.insert import inserts, readings
 from setupcheck.report.insert_drawing import as_drawing
 from setupcheck.shipped import example, shipped
 from tests.jobs.remedy_cases import HIDDEN
+from tests.unit.cli.calling import run
 from tests.unit.report.sample import changed, flat
-
-
-def run(*arguments: str | Path) -> tuple[int, str]:
-    found = CliRunner().invoke(app, [str(a) for a in arguments])
-    if isinstance(found.exception, SetupcheckError):  # the command prints it and exits 2
-        return 2, str(found.exception)
-    assert found.exception is None or isinstance(found.exception, SystemExit), found.exception
-    return found.exit_code, found.output
-
 
 # -- a wheel that the shop's own figures reach
 

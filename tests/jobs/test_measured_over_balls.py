@@ -3,11 +3,9 @@
 from __future__ import annotations
 
 import math
-from functools import cache
 
 import pytest
 
-from setupcheck.flow import Review, review
 from setupcheck.jobfile.reading import read_job_text
 from setupcheck.ledger.combine import Combined
 from setupcheck.quantities.book import Known, Open
@@ -18,23 +16,13 @@ from setupcheck.report.uncomputed import uncomputed
 from setupcheck.report.working import as_working
 from setupcheck.rulebook import Finding
 from setupcheck.shipped import shipped
+from tests.jobs.backlash_jobs import answer, judged
 
 MESH = "mesh: {wheel: wheel.teeth,"
 SPINDLE = shipped("jobs/wheel-on-spindle.yaml").read_text("utf-8")  # the teeth are cut after the joint
 ROTATOR = shipped("jobs/rotator-worm-wheel.yaml").read_text("utf-8")  # and before it: the hub grows under them
 BALLS = {SPINDLE: 3.5, ROTATOR: 2.5}
 CAUSE = "wheel measured over balls"
-
-
-@cache
-def judged(text: str) -> Review:
-    return review(read_job_text(text, "job.yaml"))
-
-
-def answer(text: str, name: str) -> object:
-    book = judged(text).book
-    found = book.get(name, book.instances("mesh")[0])
-    return found.value if isinstance(found, Known) else found
 
 
 def number(text: str, name: str) -> float:
