@@ -149,7 +149,7 @@ def review(
     @cache  # every rule asks for the same few
     def facts(scope: Scope, name: str) -> Fact:
         found = facts_of(floor, scope, name)
-        return Unknown(found.path, found.of) if isinstance(found, UnknownFact) else found
+        return Unknown(found.path, found.of, found.never) if isinstance(found, UnknownFact) else found
 
     found = evaluate(book_of_rules, book, facts, house=own, waivers=_waivers(loaded), answers=_answers(loaded), on=on)
     results = stack_results(book)

@@ -32,11 +32,18 @@ COLD_BELOW = 10.0
 
 @record
 class UnknownFact:
-    """A fact the job could state and does not; `path` is the key to fill, `of` a material stated there that does not tell it."""
+    """A fact the job could state and does not; `path` is the key to fill, `of` a material stated there that does not tell it.
+
+    never  values that it cannot have, whatever is filled in
+    """
 
     path: str
     of: str = ""
+    never: tuple[str, ...] = ()
 
+
+TURNED_BY_NOTHING = ("broach",)
+"""Cutters that a machine with a turning cutter does not have: a broach is pushed or pulled straight. Source: common practice."""
 
 Fact = str | int | float | bool | UnknownFact | None
 
@@ -315,7 +322,8 @@ def _cut_fact(floor: Floor, scope: Scope, setup: Setup | None, name: str) -> Fac
     if cutter is not None:
         return cutter.kind
     turns_a_cutter = machine is not None and machine.kind in ("dividing-head", "rotary-table", "mill", "jig-borer")
-    return UnknownFact(f"setups.{setup.op}.cut.{scope.node.name}.cutter") if turns_a_cutter else None
+    unknown = UnknownFact(f"setups.{setup.op}.cut.{scope.node.name}.cutter", never=TURNED_BY_NOTHING)
+    return unknown if turns_a_cutter else None
 
 
 def _family(called: str | None, path: str) -> Fact:

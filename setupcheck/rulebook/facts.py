@@ -73,6 +73,8 @@ def applies(conditions: Sequence[Condition], facts: Facts[S], at: S) -> Applies:
     for condition in conditions:
         fact = facts(at, condition.fact)
         if isinstance(fact, Unknown):
+            if all(value in fact.never for value in condition.values):
+                return _NO
             missing.append(fact.path)
             doubt = doubt or fact.doubt
         elif fact is None or not any(_same(fact, value) for value in condition.values):

@@ -89,11 +89,13 @@ class Book(Protocol[S]):
 class Unknown:
     """A fact that the job could state but does not; `path` is the key to fill.
 
-    of  what is stated there and does not tell the fact, as a material with a name that is not in the list
+    of     what is stated there and does not tell the fact, as a material with a name that is not in the list
+    never  values that it cannot have, whatever is filled in
     """
 
     path: str
     of: str = ""
+    never: tuple[str, ...] = ()
 
     @property
     def doubt(self) -> str:

@@ -142,7 +142,7 @@ def whole_rule_book() -> None:
     def over(floor: object, book: object) -> None:
         def facts(at: object, name: str) -> object:
             found = facts_of(floor, at, name)  # type: ignore[arg-type]
-            return Unknown(found.path, found.of) if isinstance(found, UnknownFact) else found
+            return Unknown(found.path, found.of, found.never) if isinstance(found, UnknownFact) else found
 
         evaluate(book_of_rules, book, facts)  # type: ignore[arg-type]
 

@@ -10,6 +10,7 @@ import pytest
 from setupcheck.flow import rules
 from setupcheck.report.text import as_text
 from tests.unit.report.sample import GEAR, WHEEL, changed, flat, reviewed
+from tests.unit.report.sample import PLATE as INDEX_PLATE
 
 Changes = tuple[tuple[str, str], ...]
 
@@ -221,6 +222,12 @@ def test_plain_turning_of_steel_says_no_more_than_it_did() -> None:
     assert {"chuck-key-and-jaws", "gloves-near-spindle"} == {name for name, op in found if op == 10}
     assert {"glove-heat-rating", "hot-part", "shrink-seized-halfway"} == {name for name, op in found if op == 20}
     assert {""} == set(found.values())
+
+
+def test_holes_without_a_cutter_may_be_drilled_and_are_never_broached() -> None:
+    found = asked(changed(INDEX_PLATE, ("        cutter: reamer\n", "")))
+    in_doubt = {name for (name, _), because in found.items() if because.endswith(".cut.holes.cutter")}
+    assert in_doubt and "broach-force" not in in_doubt
 
 
 def test_a_hub_with_tapped_holes_may_trap_as_well() -> None:
