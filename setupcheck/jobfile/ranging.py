@@ -30,6 +30,7 @@ class Range:
     key      path of the entry
     sign     what stands before each number (`±` or nothing);  unit  what stands behind it
     numbers  the values, decimal and in that unit;  step  of a turning point between two of them
+    paired   the entry has a smallest and a largest value, as a clearance has: both are set alike
     """
 
     key: str
@@ -37,10 +38,12 @@ class Range:
     unit: str
     numbers: tuple[Decimal, ...]
     step: Decimal
+    paired: bool = False
 
     def change(self, number: Decimal) -> Change:
         """The entry at one value."""
-        return Change(self.key, self.written(number))
+        value = self.written(number)
+        return Change(self.key, f"[{value}, {value}]" if self.paired else value)
 
     def written(self, number: Decimal) -> str:
         """A value as it is typed."""

@@ -3,12 +3,14 @@
 from __future__ import annotations
 
 from collections.abc import Callable, Iterator, Sequence
+from dataclasses import replace
 from decimal import Decimal
 from itertools import pairwise
 
 from setupcheck.flow import Review, Varied
 from setupcheck.jobfile.changing import Change
 from setupcheck.jobfile.ranging import Range
+from setupcheck.quantities.entries import node_at
 from setupcheck.quantities.judged import Result
 from setupcheck.record import record
 from setupcheck.report.as_json import json_text
@@ -52,6 +54,7 @@ def sweep(before: Review, span: Range, others: Sequence[Change], again: Callable
     An answer that turns and turns back between two neighbouring values is not seen.
     Raises: JobError for a value that the job cannot have.
     """
+    span = replace(span, paired=isinstance(node_at(before.loaded, span.key), tuple))
     made: dict[Decimal, Varied] = {}
 
     def at(number: Decimal) -> Varied:
@@ -128,6 +131,8 @@ def _head(swept: Swept) -> Iterator[str]:
         yield from house_line(swept.before.house)
     first, last = (span.written(n) for n in (span.numbers[0], span.numbers[-1]))
     yield from wrap(f"what if {span.key} = {first} to {last}", rest="    ")
+    if span.paired:
+        yield from wrap("smallest and largest alike, as if it were known", first="    ")
     for change in swept.others:
         yield from wrap(f"and {change.key} = {change.value}", rest="    ")
     yield from wrap(f"as it stands: {swept.before.verdict.upper()}")

@@ -13,7 +13,7 @@ from setupcheck.flow import Review, Varied, review, vary
 from setupcheck.jobfile.changing import Change, changed, read_change
 from setupcheck.jobfile.ranging import Range, read_range
 from setupcheck.report.json import as_data
-from setupcheck.report.vary_range import Swept, sweep
+from setupcheck.report.vary_range import Swept, as_text, sweep
 from setupcheck.shipped import shipped
 from tests.jobs.test_typed_back import HEAD, failing, judged, wheel
 
@@ -192,6 +192,13 @@ def test_a_range_is_read_as_decimal_numbers(text: str, values: list[str], step: 
     assert found is not None
     assert [found.change(n).value for n in found.numbers] == values
     assert found.step == Decimal(step)
+
+
+def test_a_range_of_a_clearance_sets_its_smallest_and_its_largest() -> None:
+    found = swept(review(shipped("jobs/rotator-worm-wheel.yaml")), "setups.40.hold.centre.clearance=2um..20um/3")
+    assert [one.changes[0].value for one in found.found] == ["[2 um, 2 um]", "[11 um, 11 um]", "[20 um, 20 um]"]
+    assert ["pass", "warn", "warn"] == [one.after.verdict for one in found.found]
+    assert "smallest and largest alike" in as_text(found)
 
 
 def test_a_range_without_a_count_has_nine_values_and_a_quoted_text_is_none() -> None:
