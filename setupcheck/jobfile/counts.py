@@ -27,7 +27,9 @@ def beyond(drawing: Drawing) -> Iterator[Miss]:
         (("require",), len(list_of(drawing.data.get("require"))), MOST_REQUIREMENTS, "requirements"),
     ):
         if many > most:
-            yield Miss(path, f"the job has {many} {what}, more than {most}. Split it where a holding begins anew", key=True)
+            yield Miss(
+                path, f"the job has {many} {what}, more than {most}. Split it where a holding begins anew", key=True
+            )
     for i, setup in enumerate(drawing.setups):
         for entry in ("hold", "join"):
             many = len(list_of(map_of(map_of(setup.get(entry)).get("stop")).get("spacers")))

@@ -32,12 +32,22 @@ FARTHEST = 50.0
 """A length may be out by so much and no requirement minds: it is not limited [mm]. Source: our screening choice."""
 STRIDES = (0.02, 0.08, 0.32)
 """How far from the drawing a touched diameter is tried, either way [mm]. Source: our screening choice."""
+SAME = 1e-8
+"""What the sum of a worst case may be off by rounding [mm]. Source: our choice."""
 MOST_STEPS = 60
 """Of a search by halves. Source: our choice."""
 
 _ERROR = re.compile(r"\.(error|depth_error|off_centre|beside|nearer)$")
-_SIZE = re.compile(r"\.spacers\[\d+\]\.length$|^parts\..*\.given\[\d+\]\.length$|^place\.worm_axis\.length$")
+_SIZE = re.compile(
+    r"\.spacers\[\d+\]\.length$|^parts\..*\.given\[\d+\]\.length$|^place\.worm_axis\.length$"
+    r"|^cutters\..*\.width$|^worm\.(thread_thickness|over_wires)$|^mesh\.centre_distance$"
+)
 """Sizes whose measured value moves a figure as their error does. Source: the ledger (`size_error` in quantities)."""
+_OF_THE_PAIR = {
+    "worm.thread_thickness": "thickness of the worm's thread",
+    "worm.over_wires": "worm over wires",
+    "mesh.centre_distance": "centre distance",
+}
 
 
 @record
@@ -114,6 +124,8 @@ def _gate(loaded: LoadedJob, path: str, behind: Sequence[Behind]) -> LengthGate 
             limits.append(Limit(one.key, low, high))
     if not limits:
         return None
+    if path.startswith("cutters."):  # the gap follows the width over a hollow flank, not quite in proportion
+        limits = [_polished(loaded, path, one, limit) for one in behind for limit in limits if limit.by == one.key]
     running = {one.key: one for one in behind if isinstance(one.result.figure, AsItRuns)}
     limits = [_as_it_runs(loaded, path, running[x.by], x, limits, zero) if x.by in running else x for x in limits]
     return _together(loaded, path, limits, node, planned)
@@ -177,6 +189,10 @@ def _words(loaded: LoadedJob, path: str) -> str:
     if isinstance(parent, Travel):
         side = "sideways" if path.endswith(".beside") else "towards the cutter"
         return f"{where}work off the cutter's travel {side} over {size_shown(parent.over, loaded.job.units)}"
+    if path in _OF_THE_PAIR:
+        return _OF_THE_PAIR[path]
+    if path.startswith("cutters."):
+        return f"width of the insert of {path.split('.')[1]}"
     if path.endswith(".off_centre"):
         return f"{where}cutter of {name} beside the axis"
     return f"{where}{'depth' if path.endswith('.depth_error') else 'length'} of {name}"
@@ -221,6 +237,30 @@ def _as_it_runs(loaded: LoadedJob, path: str, one: Behind, limit: Limit, limits:
 
     low, high = max(x.low for x in limits), min(x.high for x in limits)
     return replace(limit, low=held(limit.low, low), high=held(limit.high, high))
+
+
+def _polished(loaded: LoadedJob, path: str, one: Behind, limit: Limit) -> Limit:
+    """Both ends of a limit by one step of the secant on the route walked again, taken where it does not leave the limit."""
+    from setupcheck.quantities.trial import figure_with
+
+    def excess(value: float) -> float:
+        try:
+            return worst_excess(figure_with(loaded, one.result.stack, (path,), measured=value), stack.low, stack.high)
+        except (OutOfRange, ValueError):
+            return math.inf
+
+    def better(end: float, inwards: float) -> float:
+        if not math.isfinite(end):
+            return end
+        there, within = excess(end), excess(end + inwards)
+        slope = (within - there) / inwards
+        guess = end - there / slope if math.isfinite(slope) and slope else end
+        return guess if excess(guess) <= SAME else end
+
+    stack, step = one.result.stack, (limit.high - limit.low) / 8.0
+    if not 0.0 < step < math.inf:
+        return limit
+    return replace(limit, low=better(limit.low, step), high=better(limit.high, -step))
 
 
 def _about(excess: Callable[[float], float], start: float) -> tuple[float, float]:

@@ -7,16 +7,29 @@ from setupcheck.quantities.book import Open
 from setupcheck.quantities.shop import Floor
 
 
-def tolerance(size: Dimension) -> float | None:
-    """Width of a size's tolerance [mm]; None where it has none. Source: the job file; ISO 286 tables in rules/data."""
+def limits_of(size: Dimension) -> tuple[float, float] | None:
+    """Smallest and largest size of the drawing [mm]; None where it has no limits.
+
+    Source: the job file; ISO 286 tables in rules/data.
+    """
+    if size.nominal is None:
+        return None
     if size.lower is not None or size.upper is not None:
-        return (size.upper or 0.0) - (size.lower or 0.0)
-    if size.fit is None or size.nominal is None:
+        return size.nominal + (size.lower or 0.0), size.nominal + (size.upper or 0.0)
+    if size.fit is None:
         return None
     from setupcheck.quantities.fit_tables import limits
 
     found = limits(size.nominal, size.fit)
-    return found.upper - found.lower
+    return size.nominal + found.lower, size.nominal + found.upper
+
+
+def tolerance(size: Dimension) -> float | None:
+    """Width of a size's tolerance [mm]; None where it has none. Source: `limits_of`."""
+    if size.lower is not None or size.upper is not None:
+        return (size.upper or 0.0) - (size.lower or 0.0)
+    found = limits_of(size)
+    return found[1] - found[0] if found else None
 
 
 def at_reference(size: Dimension, path: str, floor: Floor) -> tuple[float, float] | Open:

@@ -111,7 +111,9 @@ def told(found: Sequence[Spoilt]) -> list[str]:
         lines.append(f"  {way:<10}{tries:>6}" + "".join(f"{100.0 * n / max(tries, 1):>7.1f} %" for n in shares))
     lines.append(f"  nothing judged rests on {len(unused(found))} of them")
     passed, silent = removed_and_passed(found), removed_in_silence(found)
-    lines.append(f"  removed and passed: {len(passed)}; {len(passed) - len(silent)} with the default told, {len(silent)} without")
+    lines.append(
+        f"  removed and passed: {len(passed)}; {len(passed) - len(silent)} with the default told, {len(silent)} without"
+    )
     return lines
 
 

@@ -178,7 +178,9 @@ def test_the_command_ends_with_the_verdict_and_json_has_the_plan(tmp_path: Path)
     assert plan["waves"][0]["owners"][0]["odds"] > 0.5
     text = run(large, "--instrument", "1arcsec", "--diameter", "200")
     assert "on a workpiece of 200.0 mm diameter the range is" in text.stdout
-    assert all(len(line.replace(str(tmp_path), "")) <= 80 for line in text.stdout.splitlines())  # a path has no place to break
+    assert all(
+        len(line.replace(str(tmp_path), "")) <= 80 for line in text.stdout.splitlines()
+    )  # a path has no place to break
     for option, wrong, says in (
         ("--instrument", "1,5 arcsec", "Write a point"),
         ("--instrument", "2", "unit"),

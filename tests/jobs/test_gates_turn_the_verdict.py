@@ -193,7 +193,10 @@ def test_a_kept_device_that_a_bought_part_names_too_has_one_gate_with_every_key(
 def test_a_touched_diameter_keeps_its_requirements_within_its_range() -> None:
     gates = [g for g in lengths_of(judged(WHEEL), everything=True) if g.path.endswith(".depth_from")]
     for gate in gates:
-        for end, inwards in ((gate.low, 1e-5), (gate.high, -1e-5)):  # a step of what is typed, so that it is not rounded out
+        for end, inwards in (
+            (gate.low, 1e-5),
+            (gate.high, -1e-5),
+        ):  # a step of what is typed, so that it is not rounded out
             if math.isfinite(end):
                 kept = with_typed(WHEEL, (gate.key,), f"{end + inwards:.6f} mm")
                 assert inside(judged(WHEEL)) <= inside(kept)

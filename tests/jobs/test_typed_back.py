@@ -284,7 +284,8 @@ def test_a_throat_measured_small_lets_the_insert_deeper_and_opens_the_backlash()
     exact = {f"{key}.measured": "111 mm", f"{key}.uncertainty": "1 um"}
     small = {f"{key}.measured": "110.95 mm", f"{key}.uncertainty": "1 um"}
     drawn, deep = (
-        next(r for k, r in vary(job, each).after.results.items() if k.startswith("backlash.")) for each in (exact, small)
+        next(r for k, r in vary(job, each).after.results.items() if k.startswith("backlash."))
+        for each in (exact, small)
     )
     wider = 2.0 * 0.025 * math.tan(math.radians(20.0))
     assert wider == pytest.approx(deep.combined.worst.high - drawn.combined.worst.high, rel=0.01)

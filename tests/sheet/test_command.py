@@ -70,10 +70,12 @@ JOBS = sorted(str(path.relative_to(shipped("jobs"))) for path in Path(shipped("j
 
 
 @pytest.mark.parametrize("name", JOBS)
-def test_one_file_that_fetches_nothing_runs_nothing_and_is_small(name: str) -> None:
+def test_one_file_that_fetches_nothing_runs_nothing_and_is_small(name: str, monkeypatch: pytest.MonkeyPatch) -> None:
     from setupcheck.flow import review
-    from setupcheck.report.sheet import as_sheet
+    from setupcheck.report.sheet import as_sheet, tried
 
+    if name.startswith("mistakes/"):  # their values are those of the jobs they come from, and take as long to try
+        monkeypatch.setattr(tried.Tried, "accept", lambda self, path: tried.COMPARED)
     found = review(shipped(f"jobs/{name}"))
     text = as_sheet(found)
     assert len(text.encode()) < LARGEST

@@ -5,22 +5,10 @@ from __future__ import annotations
 from setupcheck.flow import Review
 from setupcheck.quantities.gates import Gate
 from setupcheck.quantities.length_gates import LengthGate
-from setupcheck.record import record
 from setupcheck.report.gates import bands_of, ends_of, is_enough, is_far, is_idle, lengths_of, near_in_words
+from setupcheck.report.sheet.accepting import FREE, LOST, Accept, span
 from setupcheck.report.sheet.showing import paper
 from setupcheck.report.wording import on_the_dial, title_of
-
-
-@record
-class Accept:
-    """What may be accepted of a reading, and the requirement that limits it (empty where none does)."""
-
-    what: str
-    by: str = ""
-
-
-FREE = Accept("not critical")
-LOST = "nothing here alone brings {} inside"
 
 
 def accepted(found: Review) -> dict[str, Accept]:
@@ -59,16 +47,6 @@ def _length(gate: LengthGate, titles: dict[str, str], *, inches: bool) -> Accept
     if is_far(gate):
         return FREE
     low, high = ends_of(gate, inches=inches)
-    span = _span(low, high) if low and high else f"at least {low}" if low else f"at most {high}"
+    told = span(low, high) if low and high else f"at least {low}" if low else f"at most {high}"
     by = [titles.get(key, key) for key, end in ((gate.by_low, low), (gate.by_high, high)) if end]
-    return Accept(span, " and ".join(dict.fromkeys(by)))
-
-
-def _span(low: str, high: str) -> str:
-    """Both ends with their unit once.
-
-    >>> _span("-20 um", "+16 um"), _span("0.9 mm", "1 in")
-    ('-20 to +16 um', '0.9 mm to 1 in')
-    """
-    number, _, unit = low.rpartition(" ")
-    return f"{number} to {high}" if high.endswith(f" {unit}") else f"{low} to {high}"
+    return Accept(told, " and ".join(dict.fromkeys(by)))

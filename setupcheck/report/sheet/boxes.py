@@ -13,11 +13,12 @@ from setupcheck.jobfile.setups import Cut, Hold, Join, Setup, Spacer
 from setupcheck.jobfile.travel import Travel
 from setupcheck.quantities.devices import DEVICES
 from setupcheck.record import record
-from setupcheck.report.sheet.accept import Accept, accepted
+from setupcheck.report.sheet.accept import accepted
+from setupcheck.report.sheet.accepting import Accept
 from setupcheck.report.sheet.showing import Showing
+from setupcheck.report.sheet.tried import Tried
 from setupcheck.report.wording import clean
 
-NO_LIMIT = Accept("")
 PLACES = 8
 """Places round a wheel at which backlash is read. Source: common practice."""
 
@@ -49,7 +50,7 @@ class Boxes:
     def __init__(self, found: Review) -> None:
         self.found = found
         self.show = Showing(found)
-        self.accept = accepted(found)
+        self.accept, self.tried = accepted(found), Tried(found)
         self.fine, self.long = ("thou", "in") if found.book.inches else ("um", "mm")
 
     # -- one kind of reading each --------------------------------------------------------------------------------------
@@ -72,7 +73,8 @@ class Boxes:
         return self._row(key, says, plan, (Cell("", unit, wide=unit.startswith("[")),))
 
     def _row(self, key: str, says: str, plan: str, cells: tuple[Cell, ...]) -> Row:
-        return Row(key, clean(says), plan, self.accept.get(key, NO_LIMIT), self.found.loaded.line(key), cells)
+        accept = self.accept.get(key) or self.tried.accept(key)
+        return Row(key, clean(says), plan, accept, self.found.loaded.line(key), cells)
 
     # -- one setup -----------------------------------------------------------------------------------------------------
 

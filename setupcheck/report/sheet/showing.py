@@ -7,6 +7,7 @@ import math
 from setupcheck.flow import Review
 from setupcheck.jobfile.models import Deviation, Dimension
 from setupcheck.notation import show, show_angle
+from setupcheck.quantities.sized import limits_of
 from setupcheck.report.wording import as_stated, clean
 
 MINUTE = 2.9e-4
@@ -81,10 +82,18 @@ class Showing:
                 same = abs(given.lower + given.upper) < 1e-9
                 both = f" {self._sign(given.upper)} / {self._sign(given.lower)}"
                 limits = f" ± {self.fine(given.upper)}" if same else both
-            parts.append(f"{number}{fit} {unit}{limits}")
+            between = limits_of(given) if given.fit else None
+            told = f": {self._limit(between[0], up=True)} to {self._limit(between[1], up=False)}" if between else ""
+            parts.append(f"{number}{fit} {unit}{limits}{told}")
         if given.measured is not None:
             parts.append(f"measured {self.length(given.measured)}")
         return "; ".join(parts)
+
+    def _limit(self, value: float, *, up: bool) -> str:
+        """A limit of size to the step it is measured by, rounded inwards; without its unit."""
+        steps, digits = (1e4 / 25.4, 4) if self.inches else (1e3, 3)
+        whole = math.ceil(value * steps - 1e-6) if up else math.floor(value * steps + 1e-6)
+        return f"{whole / 10**digits:.{digits}f}"
 
     def _sign(self, value: float) -> str:
         return ("+" if value > 0.0 else "-" if value < 0.0 else "") + self.fine(abs(value))
