@@ -89,10 +89,10 @@ def _reviewed(
         from setupcheck.report.json import as_json as report
 
         return EXIT[found.verdict], report(found)
-    from setupcheck.report.text import as_text, verdict_lines
+    from setupcheck.report.text import as_text, verdict_line
 
     if quiet:
-        return EXIT[found.verdict], "\n".join(verdict_lines(found)) + "\n"
+        return EXIT[found.verdict], f"{verdict_line(found)}\n"
     return EXIT[found.verdict], as_text(found, everything=everything)
 
 

@@ -165,10 +165,10 @@ def centre_move(
 
 
 def _height(setup: Setup, now: Centre, node: Round) -> float | None:
-    """Where the dial stands, beside a second plane: as before where that is on the surface, else far from that plane [mm]."""
+    """Where the dial stands [mm]: in the middle; beside a second plane as before where it is on the surface, else far away."""
     second = setup.hold.and_centre if setup.hold is not None else None
     if second is None:
-        return None
+        return (node.low + node.high) / 2.0
     if now.at is not None and node.low <= now.at <= node.high:
         return now.at
     inset = min(FROM_THE_END, (node.high - node.low) / 4.0)

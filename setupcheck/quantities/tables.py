@@ -23,6 +23,7 @@ from setupcheck.quantities.fit_stated import FIT_STATED
 from setupcheck.quantities.growing import GROWING
 from setupcheck.quantities.head_setting import HEAD
 from setupcheck.quantities.heat_checks import HEAT_CHECKS
+from setupcheck.quantities.held_where import HELD_WHERE
 from setupcheck.quantities.hobs import HOBS
 from setupcheck.quantities.index_table import INDEX_TABLE
 from setupcheck.quantities.insert_measured import MEASURED
@@ -347,4 +348,5 @@ TABLES: tuple[Quantity, ...] = (
     *PROVE,
     *OPPOSITE,
     *TRUING,
+    *HELD_WHERE,
 )

@@ -5,10 +5,11 @@ from __future__ import annotations
 from collections.abc import Iterator
 from itertools import groupby
 
-from setupcheck.jobfile.models import Flat, Round
+from setupcheck.jobfile.models import Deviation, Flat, Round, Toothing
 from setupcheck.jobfile.names import Ref
 from setupcheck.jobfile.reading import LoadedJob
 from setupcheck.jobfile.setups import Setup
+from setupcheck.quantities.devices import DIALLED
 from setupcheck.quantities.dividing import HAS_WHEEL
 from setupcheck.quantities.pairing import FITTED
 from setupcheck.record import record
@@ -33,6 +34,12 @@ def taken(loaded: LoadedJob) -> tuple[Taken, ...]:
     return tuple(sorted(_all(loaded), key=lambda one: one.what))
 
 
+def standing_on(loaded: LoadedJob) -> str:
+    """`on 3 defaults`: what a pass adds where anything was taken; empty where all is written."""
+    many = len(taken(loaded))
+    return f"on {many} default{'s' if many > 1 else ''}" if many else ""
+
+
 def taken_in_lines(found: tuple[Taken, ...]) -> list[str]:
     """One text for each default: `the middle of the surface: setups.10.hold.centre.at, setups.20.hold.centre.at`."""
     return [
@@ -49,6 +56,12 @@ def _all(loaded: LoadedJob) -> Iterator[Taken]:
         yield Taken("room", "the shop at 20 degC")
     for setup in job.setups:
         yield from _of_setup(loaded, setup)
+    for name, part in job.parts.items():
+        if part.properties is not None and part.properties.heat_cap is None and _heated(loaded, name):
+            yield Taken(f"parts.{name}.properties.heat_cap", "heated no further than others of its class")
+        for of, teeth in part.surfaces.items():
+            if isinstance(teeth, Toothing) and teeth.width is None:
+                yield Taken(f"parts.{name}.surfaces.{of}.width", "teeth looked at in their middle")
     for i, required in enumerate(job.require, start=1):
         if required.what in FACED and required.across is None:
             yield Taken(f"require[{i}].across", "judged across the face's own diameter")
@@ -57,6 +70,12 @@ def _all(loaded: LoadedJob) -> Iterator[Taken]:
         if isinstance(surface, Flat) and surface.diameter is None:
             at = f"parts.{ref.part}.surfaces.{ref.surface}.diameter"
             yield Taken(at, "a face that ends where the metal beside it does")
+
+
+def _heated(loaded: LoadedJob, part: str) -> bool:
+    """Whether a part is made hot, or cold, for a joint."""
+    joins = [setup.join for setup in loaded.job.setups if setup.join is not None and setup.join.heat is not None]
+    return any(part in (loaded.ref(join.outer).part, loaded.ref(join.inner).part) for join in joins)
 
 
 def _surface(loaded: LoadedJob, ref: Ref) -> object:
@@ -70,6 +89,26 @@ def _faces(loaded: LoadedJob) -> Iterator[Ref]:
     named += [loaded.ref(text) for r in job.require if r.what in OF_FACES for text in (r.of, r.about) if text]
     named += [loaded.ref(s.join.stop.on) for s in job.setups if s.join is not None and s.join.stop is not None]
     yield from dict.fromkeys(Ref(ref.part, ref.surface) for ref in named)
+
+
+def _of_readings(setup: Setup, path: str) -> Iterator[Taken]:
+    """Dial readings that are half written: what was planned, what was read, what it was read by."""
+    hold, join = setup.hold, setup.join
+    entries = [(f"{path}.hold.{key}", getattr(hold, key, None), "runout") for key in ("centre", "and_centre")]
+    entries.append((f"{path}.hold.square", getattr(hold, "square", None), "face_runout"))
+    entries.append((f"{path}.join.trued", join.trued if join is not None else None, "runout"))
+    for where, entry, name in entries:
+        given = getattr(entry, name, None)
+        if not isinstance(given, Deviation):
+            continue
+        at = f"{where}.{name}"
+        known = given.uncertainty is not None or given.standard_uncertainty is not None or given.high_at is not None
+        if given.measured is not None and given.at_most is None:
+            yield Taken(f"{at}.at_most", "no plan that the reading is held against")
+        if given.measured is None and known:
+            yield Taken(f"{at}.measured", "not measured yet: the planned bound counts")
+        if given.indicator is None and getattr(entry, "by", "") in DIALLED:
+            yield Taken(f"{at}.indicator", "a dial as fine as its reading needs")
 
 
 def _of_setup(loaded: LoadedJob, setup: Setup) -> Iterator[Taken]:
@@ -86,6 +125,7 @@ def _of_setup(loaded: LoadedJob, setup: Setup) -> Iterator[Taken]:
             continue
         far = hold is not None and hold.centre is not None and key == "and_centre" and hold.centre.on == plane.on
         yield Taken(f"{path}.hold.{key}.at", f"held {'at the far end' if far else 'in the middle'} of the surface")
+    yield from _of_readings(setup, path)
     divide = setup.divide
     if divide is not None and divide.by in HAS_WHEEL and divide.by != "theodolite" and divide.clamp is None:
         yield Taken(f"{path}.divide.clamp", "clamping shifts nothing beyond the setting")

@@ -20,7 +20,7 @@ from setupcheck.report.progress import still_to_move
 from setupcheck.report.prove_out import prove_outs
 from setupcheck.report.remedies import remedy_in_words
 from setupcheck.report.rests import how_known, measure_first, record_used, rests_in_words
-from setupcheck.report.taken import taken, taken_in_lines
+from setupcheck.report.taken import standing_on, taken, taken_in_lines
 from setupcheck.report.then_now import then_now
 from setupcheck.report.uncomputed import in_lines, uncomputed
 from setupcheck.report.wording import clean, finer, in_unit, title_of, unit_of, wrap
@@ -76,8 +76,21 @@ def counts(found: Review) -> str:
 
 def verdict_lines(found: Review) -> list[str]:
     """The verdict with its counts, and how far it reaches."""
-    limited = " of what this version computes" if found.verdict == "pass" and uncomputed(found.loaded) else ""
-    return wrap(f"{found.verdict.upper()}{limited}   {counts(found)}", rest="      ")
+    return wrap(verdict_line(found), rest="      ")
+
+
+def verdict_line(found: Review) -> str:
+    """The same as one line, however long."""
+    said = " ".join(part for part in (found.verdict.upper(), how_far(found)) if part)
+    return f"{said}   {counts(found)}"
+
+
+def how_far(found: Review) -> str:
+    """What a pass does not say by itself: `of what this version computes, on 3 defaults`; empty where it says all."""
+    if found.verdict != "pass":
+        return ""
+    beyond = "of what this version computes" if uncomputed(found.loaded) else ""
+    return ", ".join(part for part in (beyond, standing_on(found.loaded)) if part)
 
 
 def _head(found: Review) -> Iterator[str]:

@@ -130,4 +130,4 @@ def test_a_proposal_goes_by_the_record_of_a_device_before_the_house_value(tmp_pa
     assert 4.0 < asked < 7.7
     _, found = mend(shipped(f"jobs/mistakes/{HIDDEN}.yaml"), devices=tmp_path / "own.csv")
     typed = [edit.value for one in found.proposals for edit in one.edits if isinstance(edit, Change)]
-    assert "{on: hub, by: four-jaw, runout: {device: four-jaw}}" in typed
+    assert "{on: hub, by: four-jaw, at: 23, runout: {device: four-jaw}}" in typed

@@ -108,6 +108,7 @@ QUANTITIES: Mapping[str, FakeQuantity] = {
         FakeQuantity("hold.planned", "hold", "um", 1),
         FakeQuantity("hold.measured_u", "hold", "um", 2),
         FakeQuantity("hold.clearance_share", "hold", "%", 0),
+        FakeQuantity("hold.beyond_at_an_end", "hold", "%", 1),
         FakeQuantity("truing.need", "hold", "um", 1),
         FakeQuantity("truing.room", "hold", "um", 1),
         FakeQuantity("hold.reach", "cut", "1", 2),

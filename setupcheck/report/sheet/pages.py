@@ -23,7 +23,7 @@ from setupcheck.report.sheet.checks import checks, sign_off
 from setupcheck.report.sheet.records import Caution, Operation, Share, Sheet, Step, Trouble
 from setupcheck.report.sheet.showing import paper
 from setupcheck.report.sheet.words import ROLE, Said, Words
-from setupcheck.report.text import counts, limits_in_words
+from setupcheck.report.text import counts, how_far, limits_in_words
 from setupcheck.report.uncomputed import in_lines, uncomputed
 from setupcheck.report.wording import finer, title_of, unit_of
 from setupcheck.report.worked_out import worked_out
@@ -69,7 +69,6 @@ def sheet_of(found: Review, read: ReadBack | None = None) -> Sheet:
     used |= {f"hold-{setup.op}" for setup in job.setups if setup.keeps is not None}  # drawn at the operation they keep
     overview = tuple(p for name, p in drawn.items() if not name.startswith("stack-") and name not in used)
     left = [s for s in found.evaluation.cautions if s.severity == "stop-and-check" and not s.answered]
-    limited = "of what this version computes" if found.verdict == "pass" and uncomputed(loaded) else ""
     return Sheet(
         title=paper(job.title),
         job=paper(job.job or "", 60),
@@ -80,7 +79,7 @@ def sheet_of(found: Review, read: ReadBack | None = None) -> Sheet:
         rule_book=found.rulebook.version,
         rule_hash=found.rulebook.sha256[:16],
         verdict=found.verdict.upper(),
-        limited=limited,
+        limited=how_far(found),
         counts=counts(found),
         units="inch" if found.book.inches else "mm",
         room=f"{job.room:g} degC",
