@@ -17,8 +17,8 @@ from setupcheck.errors import SetupcheckError, printable
 def command(
     job: Annotated[Path, typer.Argument(metavar="JOB", help="Job file (YAML).", show_default=False)],
     out: Annotated[
-        Path, typer.Option("--out", "-o", help="File to write, HTML; with --drawing SVG.", show_default=False)
-    ],
+        Path | None, typer.Option("--out", "-o", help="File to write, HTML; with --drawing SVG.", show_default=False)
+    ] = None,
     drawing: Annotated[
         str | None,
         typer.Option(help="Write this drawing alone, as in hold-30; an unknown name lists all.", show_default=False),
@@ -40,7 +40,10 @@ def command(
     """
     from setupcheck.flow import read_back, review
 
-    refuse_place(out, force=force)
+    if out is None and drawing is None:
+        raise SetupcheckError("a sheet goes into a file. Name it: -o sheet.html")
+    if out is not None:
+        refuse_place(out, force=force)
     acts = house_of(job, house, leave=no_house)
     found = review(job, house=acts, on=day_of(on), devices=record)
     read = read_back(found.loaded, readings) if readings is not None else None
@@ -52,10 +55,13 @@ def command(
             raise SetupcheckError(
                 f"this job has no drawing '{printable(drawing)}'. It has {', '.join(drawn) or 'none'}"
             )
+        if out is None:
+            raise SetupcheckError(f"a drawing goes into a file. Name it: -o {printable(drawing)}.svg")
         text = drawn[drawing].draw()
     else:
         from setupcheck.report.sheet import as_sheet
 
         text = as_sheet(found, read)
+    assert out is not None
     write_whole(out, text, force=force)
     sys.stdout.write(f"written: {printable(str(out))}\nthe review says {found.verdict.upper()}\n")

@@ -59,6 +59,8 @@ def advice(entry: HoldEntry, floor: Floor, planned: float) -> str | None:
     if row is None:
         return None
     double = floor.fine(2.0 * planned)
+    if planned <= 0.0:  # nothing is not half of anything
+        return f"No device runs without error. Usual of {row.device}: {_range(row, floor)}; write what yours showed."
     told = f"usual of {row.device}: {_range(row, floor)} ({row.note})"
     if entry.key == "face_runout":
         half = f"Run-out is the full movement of the dial over one turn; if this is half of it, write {double}"
@@ -107,6 +109,8 @@ def axis_advice(floor: Floor, setup: Setup, planned: float) -> str | None:
     row = typical(machine.kind, "axis") if machine is not None else None
     if row is None:
         return None
+    if planned <= 0.0:
+        return f"No axis runs without error. Usual of a {row.device}: {_range(row, floor)}; write what yours showed."
     return (
         f"Run-out is the full movement of the dial; if half of it was meant, write {floor.fine(2.0 * planned)}. "
         f"Usual of a {row.device}: {_range(row, floor)} ({row.note}). If {name} was tested so true, write axis_runout: "

@@ -47,7 +47,9 @@ def test_a_file_that_is_there_stays_unless_it_is_forced(job: Path) -> None:
         (("-o", "a.svg", "--drawing", "hold-31"), "this job has no drawing 'hold-31'. It has "),
         (("-o", "a.html", "--on", "soon"), "soon"),
         (("-o", "a.html", "--readings", "gone.csv"), "gone.csv"),
-        ((), "-o"),
+        ((), "a sheet goes into a file. Name it: -o sheet.html"),
+        (("--drawing", "hold-31"), "this job has no drawing 'hold-31'. It has part-plate"),
+        (("--drawing", "hold-30"), "a drawing goes into a file. Name it: -o hold-30.svg"),
     ],
 )
 def test_what_cannot_be_written_is_said_and_nothing_is_left(job: Path, arguments: tuple[str, ...], says: str) -> None:
