@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
+
 from setupcheck.errors import JobError
 from setupcheck.jobfile.models import Round
 from setupcheck.jobfile.setups import Centre
@@ -14,6 +16,8 @@ from setupcheck.quantities.trial import figure_on, floor_with
 
 AT_THE_EXACT_GAP = ("contact-length", "contact-area")
 """Requirements that no place of a hold moves, and that take long to tell."""
+SAME = 1e-9
+"""Share of a limit by which a figure may seem moved from the noise of sums alone. Source: our choice."""
 
 
 def beyond_at_an_end(floor: Floor, entry: HoldEntry, path: str, results: tuple[Result, ...]) -> float | None:
@@ -32,16 +36,31 @@ def beyond_at_an_end(floor: Floor, entry: HoldEntry, path: str, results: tuple[R
         return None
     stretch = (surface.low, surface.high) if centre.grip is None else (centre.grip.low, centre.grip.high)
     judged = [r for r in results if r.scale and _met(r) and r.stack.require.what not in AT_THE_EXACT_GAP]
-    most = 0.0
-    for height in stretch if judged else ():
+    found = _beyond(floor, path, stretch[0], judged) if judged else []
+    if found and all(abs(there - taken) < SAME for there, taken in found):
+        return 0.0  # a figure is straight in the height, so the other end moves nothing either
+    found += _beyond(floor, path, stretch[1], judged) if judged else []
+    return max((there for there, _ in found if there > 0.0), default=0.0)
+
+
+def _beyond(floor: Floor, path: str, height: float, judged: Sequence[Result]) -> list[tuple[float, float]]:
+    """(there, as taken): how far each requirement is beyond its limit with the part held at a height, over the limit.
+
+    Left out what cannot be told there: that it cannot be held so is no answer to where it is held.
+    """
+    try:
+        walked = floor_with(floor.loaded, (path,), at=height)
+    except (JobError, OutOfRange, ValueError):
+        return []
+    found = []
+    for one in judged:
+        low, high, scale = one.stack.low, one.stack.high, one.scale or 1.0
         try:
-            walked = floor_with(floor.loaded, (path,), at=height)
-            for one in judged:
-                excess = worst_excess(figure_on(walked, one.stack), one.stack.low, one.stack.high)
-                most = max(most, excess / (one.scale or 1.0))
+            there = worst_excess(figure_on(walked, one.stack), low, high)
         except (JobError, OutOfRange, ValueError):
-            continue  # it cannot be held there, which is no answer to where it is held
-    return most
+            continue
+        found.append((there / scale, worst_excess(one.figure, low, high) / scale))
+    return found
 
 
 def _met(result: Result) -> bool:
