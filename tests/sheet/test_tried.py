@@ -120,13 +120,13 @@ def test_heat_and_sizes_of_a_joint_are_told_with_the_rule_that_sets_each_end() -
     assert heat.what == "171 to 190 degC"
     assert [name in heat.by for name in ("HEAT-003", "HEAT-002")] == [True, True]
     bore = boxes(WHEEL).tried.accept("parts.wheel.surfaces.bore.diameter")
-    assert bore.by.endswith("beyond the drawing only if the planner agrees")
+    assert bore.by.endswith("beyond its own limits only if the planner agrees")
 
 
 def test_what_nobody_looks_at_says_so() -> None:
     assert boxes(WHEEL).tried.accept("setups.30.cut.throat.error").what == "no rule looks at it"
     bevel = boxes(shipped("jobs/bevel-pinion-blank.yaml"))
-    assert bevel.tried.accept("parts.pinion.surfaces.bore.diameter").what == "no rule looks at it: keep the drawing"
+    assert bevel.tried.accept("parts.pinion.surfaces.bore.diameter").what == "no rule looks at it: keep its limits"
 
 
 def test_a_value_that_fails_as_planned_is_told_where_it_would_do() -> None:

@@ -17,9 +17,9 @@ from setupcheck.report.sheet.accepting import FREE, LOST, Accept, span
 from setupcheck.report.sheet.showing import paper
 from setupcheck.report.wording import FINE_BELOW, on_the_dial, title_of
 
-UNHEARD, KEEP = Accept("no rule looks at it"), Accept("no rule looks at it: keep the drawing")
+UNHEARD, KEEP = Accept("no rule looks at it"), Accept("no rule looks at it: keep its limits")
 COMPARED = Accept("the review holds it against the plan")
-BEYOND = "beyond the drawing only if the planner agrees"
+BEYOND = "beyond its own limits only if the planner agrees"
 SECOND = math.radians(1.0 / 3600.0)
 LONGEST = 60
 
