@@ -205,7 +205,8 @@ def test_points_to_sign_are_those_the_job_has() -> None:
 
 
 def test_a_limited_pass_is_told_beside_the_verdict() -> None:
-    assert ("PASS", "of what this version computes") == (sheet_of(told(WHEEL)).verdict, sheet_of(told(WHEEL)).limited)
+    said = "of what this version computes, on 5 defaults"
+    assert ("PASS", said) == (sheet_of(told(WHEEL)).verdict, sheet_of(told(WHEEL)).limited)
 
 
 def test_the_mark_on_every_page_cannot_leave_its_place_in_the_style_sheet() -> None:
