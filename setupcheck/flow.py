@@ -145,13 +145,8 @@ def review(
         loaded, uses, of_house = with_own(loaded, devices, own)
     floor, book = prepare(loaded)
     book_of_rules = own.rulebook if own is not None else rules()
-
-    @cache  # every rule asks for the same few
-    def facts(scope: Scope, name: str) -> Fact:
-        found = facts_of(floor, scope, name)
-        return Unknown(found.path, found.of, found.never) if isinstance(found, UnknownFact) else found
-
-    found = evaluate(book_of_rules, book, facts, house=own, waivers=_waivers(loaded), answers=_answers(loaded), on=on)
+    waivers, answers = _waivers(loaded), _answers(loaded)
+    found = evaluate(book_of_rules, book, facts_on(floor), house=own, waivers=waivers, answers=answers, on=on)
     results = stack_results(book)
     let_go_of_older(book)
     return Review(
@@ -256,17 +251,6 @@ def _counts(found: Review) -> dict[tuple[str, str], int]:
     for one in found.evaluation.findings:
         counts[one.rule, one.verdict] = counts.get((one.rule, one.verdict), 0) + 1
     return counts
-
-
-def with_devices(loaded: LoadedJob, path: str | Path) -> tuple[LoadedJob, RecordUse]:
-    """The job with the limits of a shop's own record of its devices in place of typical values.
-
-    Raises: JobError with every problem of the record.
-    """
-    from setupcheck.quantities.device_record import read_record  # few jobs have one
-    from setupcheck.quantities.own_values import with_record
-
-    return with_record(loaded, read_record(path))
 
 
 def with_own(
@@ -425,6 +409,16 @@ def prepare(loaded: LoadedJob) -> tuple[Floor, Book]:
     """
     floor = walk(loaded)
     return floor, Book(TABLES, scopes(floor), inches=loaded.job.units == "in")
+
+
+def facts_on(floor: Floor) -> Callable[[Scope, str], Fact]:
+    """What rules ask of a walked route beside its numbers; every rule asks for the same few."""
+    return cache(partial(_fact, floor))
+
+
+def _fact(floor: Floor, scope: Scope, name: str) -> Fact:
+    found = facts_of(floor, scope, name)
+    return Unknown(found.path, found.of, found.never) if isinstance(found, UnknownFact) else found
 
 
 def stack_results(book: Book) -> dict[str, Result]:

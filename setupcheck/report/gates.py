@@ -9,7 +9,7 @@ from typing import TYPE_CHECKING
 from setupcheck.notation import FACTOR, show
 from setupcheck.quantities.finished import finished
 from setupcheck.quantities.gates import Gate, Limit
-from setupcheck.report.wording import FINE_BELOW, as_stated, clean, on_the_dial, title_of, wrap
+from setupcheck.report.wording import FINE_BELOW, as_stated, clean, inwards, on_the_dial, title_of, wrap
 
 if TYPE_CHECKING:
     from setupcheck.flow import Review
@@ -229,15 +229,9 @@ def _end(gate: LengthGate, value: float, inches: bool, *, up: bool) -> str:
     if gate.is_size:
         unit, digits = ("in", 4) if inches else ("mm", 3)
         digits += max(gate.high - gate.planned, gate.planned - gate.low) < FINE_BELOW
-        return show(_inwards(value, FACTOR[unit] * 10**digits, up=up), unit, digits)
+        return show(inwards(value, FACTOR[unit] * 10**digits, up=up), unit, digits)
     small = on_the_dial(abs(value), inches=inches, up=up is (value > 0.0), step=gate.indicator)
     return small if not any(c in "123456789" for c in small) else f"{'-' if value < 0.0 else '+'}{small}"
-
-
-def _inwards(value: float, steps: float, *, up: bool) -> float:
-    """A value on whole steps, so many to a millimetre; what misses a step by the noise of a sum stands on it."""
-    whole = math.ceil(value * steps - 1e-6) if up else math.floor(value * steps + 1e-6)
-    return whole / steps
 
 
 def _plan(gate: LengthGate, *, inches: bool) -> str:

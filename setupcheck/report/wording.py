@@ -87,6 +87,16 @@ def on_the_dial(value: float, *, inches: bool, up: bool = False, step: float = 0
     return as_stated(whole * step, inches=inches) if step else show(whole / 10**digits / FACTOR[unit], unit, digits)
 
 
+def inwards(value: float, steps: float, *, up: bool) -> float:
+    """A value on whole steps, so many to a unit; what misses a step by the noise of a sum stands on it.
+
+    >>> inwards(2.3016, 1000.0, up=True), inwards(2.3016, 1000.0, up=False)
+    (2.302, 2.301)
+    """
+    whole = math.ceil(value * steps - ROUNDING) if up else math.floor(value * steps + ROUNDING)
+    return whole / steps
+
+
 def as_stated(value: float, *, inches: bool) -> str:
     """A reading with as few decimals as tell it: `3 um`, `12.5 um`, `0.25 thou`."""
     unit = INCH["um"] if inches else "um"

@@ -6,15 +6,17 @@ Trials are made on the typed job; here the same value goes the other way, as tex
 from __future__ import annotations
 
 import math
+from dataclasses import replace
 from functools import cache
 from pathlib import Path
 
 import pytest
 
-from setupcheck.allowed import FINEST, Allowed, allowed, entry_at
+from setupcheck.allowed import FINEST, NO_ROUTE, Allowed, allowed, entry_of
 from setupcheck.flow import Review, review
 from setupcheck.jobfile.changing import Change, changed
 from setupcheck.quantities.entries import node_at
+from setupcheck.quantities.trial import with_entry
 from setupcheck.report.sheet.boxes import Boxes
 from setupcheck.rulebook import VERDICTS
 from setupcheck.shipped import shipped
@@ -143,9 +145,36 @@ def test_what_nobody_looks_at_says_so() -> None:
 def test_a_value_that_fails_as_planned_is_told_where_it_would_do() -> None:
     """A head set four degrees where the lead angle asks for less: the range is that of the lead angle, not of the slip."""
     slipped = review(changed(judged(WHEEL).loaded, [Change("setups.40.head.tilt", "4 deg")]))
-    entry = entry_at(slipped.loaded, "setups.40.head.tilt")
+    entry = entry_of(slipped, "setups.40.head.tilt")
     right = found(WHEEL, "setups.40.head.tilt")
     assert entry is not None
     assert right is not None
     told = allowed(slipped, entry)
     assert (told.low, told.high) == pytest.approx((right.low, right.high), abs=2.0 * FINEST["angle"])
+
+
+def test_what_the_planner_has_waived_sets_no_end() -> None:
+    """The end float fails nothing here; at the limit of MESH-003 it is a warning, and waived it limits the box no longer."""
+    loose = [Change("worm.end_float", "20 um"), Change("waive", "[{rule: MESH-003, at: mesh, reason: as found}]")]
+    waived = review(changed(judged(WHEEL).loaded, loose))
+    assert "waived" in {f.verdict for f in waived.evaluation.findings if f.rule == "MESH-003"}
+    entry = entry_of(waived, "worm.end_float")
+    assert entry is not None
+    assert "MESH-003" not in allowed(waived, entry).by_high
+
+
+def test_a_range_is_not_told_while_what_hears_of_it_is_open() -> None:
+    unknown = review(changed(judged(WHEEL).loaded, [Change("parts.wheel.material", "unobtainium")]))
+    told = Boxes(unknown).tried.accept("parts.wheel.surfaces.bore.diameter").what
+    assert told.startswith("cannot be told while this is open: ")
+
+
+def test_a_value_with_which_the_route_cannot_be_walked_is_not_let_through() -> None:
+    """No rule speaks where there is no route; that is no pass. Beyond 2 um here a direction is named that is not there yet."""
+    loaded, path = judged(WHEEL).loaded, "setups.30.cut.throat.error"
+    entry = entry_of(judged(WHEEL), path)
+    assert entry is not None
+    lost = with_entry(loaded, ("setups.20.hold.centre.runout",), measured=0.001, high_at="tooth 3")
+    told = allowed(judged(WHEEL), replace(entry, with_=lambda value: entry.with_(value) if value < 0.002 else lost))
+    assert told.high == pytest.approx(0.002, abs=2.0 * FINEST["error"])
+    assert (told.by_low, told.by_high) == ((), (NO_ROUTE,))

@@ -6,9 +6,9 @@ import math
 
 from setupcheck.flow import Review
 from setupcheck.jobfile.models import Deviation, Dimension
-from setupcheck.notation import show, show_angle
+from setupcheck.notation import FACTOR, show, show_angle
 from setupcheck.quantities.sized import limits_of
-from setupcheck.report.wording import as_stated, clean
+from setupcheck.report.wording import as_stated, clean, inwards
 
 MINUTE = 2.9e-4
 """A minute of arc [rad], from which on small angles are shown in minutes. Source: our choice."""
@@ -91,9 +91,8 @@ class Showing:
 
     def _limit(self, value: float, *, up: bool) -> str:
         """A limit of size to the step it is measured by, rounded inwards; without its unit."""
-        steps, digits = (1e4 / 25.4, 4) if self.inches else (1e3, 3)
-        whole = math.ceil(value * steps - 1e-6) if up else math.floor(value * steps + 1e-6)
-        return f"{whole / 10**digits:.{digits}f}"
+        unit, digits = ("in", 4) if self.inches else ("mm", 3)
+        return show(inwards(value, FACTOR[unit] * 10**digits, up=up), unit, digits).partition(" ")[0]
 
     def _sign(self, value: float) -> str:
         return ("+" if value > 0.0 else "-" if value < 0.0 else "") + self.fine(abs(value))

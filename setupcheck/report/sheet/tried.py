@@ -7,7 +7,7 @@ from __future__ import annotations
 
 import math
 
-from setupcheck.allowed import Allowed, Entry, allowed, entry_at, over_balls_at, touched_at
+from setupcheck.allowed import NO_ROUTE, Allowed, allowed, entry_of
 from setupcheck.flow import Review
 from setupcheck.jobfile.models import Dimension
 from setupcheck.notation import FACTOR, show, show_angle
@@ -15,11 +15,12 @@ from setupcheck.quantities.entries import node_at
 from setupcheck.quantities.sized import limits_of
 from setupcheck.report.sheet.accepting import FREE, LOST, Accept, span
 from setupcheck.report.sheet.showing import paper
-from setupcheck.report.wording import FINE_BELOW, on_the_dial, title_of
+from setupcheck.report.wording import FINE_BELOW, inwards, on_the_dial, title_of
 
 UNHEARD, KEEP = Accept("no rule looks at it"), Accept("no rule looks at it: keep its limits")
 COMPARED = Accept("the review holds it against the plan")
 BEYOND = "beyond its own limits only if the planner agrees"
+UNTOLD = "cannot be told while this is open: {}"
 SECOND = math.radians(1.0 / 3600.0)
 LONGEST = 60
 
@@ -36,18 +37,15 @@ class Tried:
     def accept(self, path: str) -> Accept:
         """What to accept at a path of the job file."""
         if path not in self._known:
-            entry = self._entry(path)
+            entry = entry_of(self.found, path)
             if entry is not None:
                 self.ranges[path] = allowed(self.found, entry)
             self._known[path] = self._told(self.ranges[path]) if entry is not None else COMPARED
         return self._known[path]
 
-    def _entry(self, path: str) -> Entry | None:
-        if path.endswith(".depth_from"):
-            return touched_at(self.found, path)
-        return over_balls_at(self.found, path) if path == "mesh.over_balls" else entry_at(self.found.loaded, path)
-
     def _told(self, one: Allowed) -> Accept:
+        if one.untold:
+            return Accept(UNTOLD.format(self._by(one.untold)))
         if not one.heard:
             return KEEP if one.kind == "size" else UNHEARD
         if one.lost:
@@ -71,6 +69,8 @@ class Tried:
     def _by(self, names: tuple[str, ...]) -> str:
         """The requirement that sets an end, or the rule with what it is about; the first of several."""
         for name in names:
+            if name == NO_ROUTE:
+                return "beyond it the route cannot be walked"
             rule = self.found.rulebook.rule(name)
             return f"{name} {paper(rule.title, LONGEST)}" if rule is not None else self._titles.get(name, name)
         return ""
@@ -81,22 +81,16 @@ class Tried:
             return ""
         inches = self.found.book.inches
         if one.kind == "angle":
-            return show_angle(_inwards(value, 1.0 / SECOND, up=up), "dms", 0)
+            return show_angle(inwards(value, 1.0 / SECOND, up=up), "dms", 0)
         if one.kind == "heat":
-            return f"{_inwards(value, 1.0, up=up):g} degC"
+            return f"{inwards(value, 1.0, up=up):g} degC"
         if one.kind == "time":
-            return f"{_inwards(value, 1.0, up=up):g} s"
+            return f"{inwards(value, 1.0, up=up):g} s"
         if one.kind == "size":
             unit, digits = ("in", 4) if inches else ("mm", 3)
             digits += min(abs(end - one.planned) for end in (one.low, one.high)) < FINE_BELOW
-            return show(_inwards(value, FACTOR[unit] * 10**digits, up=up), unit, digits)
+            return show(inwards(value, FACTOR[unit] * 10**digits, up=up), unit, digits)
         small = on_the_dial(abs(value), inches=inches, up=up is (value > 0.0))
         if one.kind == "most" or not any(c in "123456789" for c in small):
             return small
         return f"{'-' if value < 0.0 else '+'}{small}"
-
-
-def _inwards(value: float, steps: float, *, up: bool) -> float:
-    """A value on whole steps, so many to a unit; what misses a step by the noise of a search stands on it."""
-    whole = math.ceil(value * steps - 1e-3) if up else math.floor(value * steps + 1e-3)
-    return whole / steps
