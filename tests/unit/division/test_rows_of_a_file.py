@@ -44,7 +44,7 @@ def test_empty_cells_too_many_and_notes_too_few_do_no_harm(tmp_path: Path) -> No
 
 @pytest.mark.parametrize("row", ["90", "90,2,,7"])
 def test_a_row_of_another_length_is_refused_with_its_line(tmp_path: Path, row: str) -> None:
-    with pytest.raises(SetupcheckError, match="test.csv:3: [14] cell"):
+    with pytest.raises(SetupcheckError, match=r"test\.csv:3: [14] cell"):
         written(tmp_path, "angle_deg,deviation_arcsec,note", "0,1,", row)
 
 
