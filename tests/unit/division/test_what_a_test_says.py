@@ -72,7 +72,7 @@ def test_a_drift_that_the_zeros_of_the_runs_take_up_is_not_fitted() -> None:
 
 
 def test_the_interval_of_a_drift_is_that_of_least_squares(tmp_path: Path) -> None:
-    """Four turns of twelve stations with a drift of 6 arc seconds; every second turn is read anew, so that no bend is there."""
+    """Four turns of twelve stations with an even drift of 6 arc seconds and a scatter of half a one."""
     rng = np.random.default_rng(5)
     degrees, t = round_the_circle(12, 4), np.linspace(-0.5, 0.5, 48)
     y = 6.0 * t + rng.normal(0.0, 0.5, 48)
