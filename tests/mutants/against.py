@@ -21,6 +21,8 @@ JOINTS = (
 LEDGER = (
     f"{UNIT}/ledger/test_by_hand.py",
     f"{UNIT}/ledger/test_bounds_by_hand.py",
+    f"{UNIT}/ledger/test_draws_and_ends.py",
+    f"{UNIT}/ledger/test_small_pieces_by_hand.py",
     f"{UNIT}/ledger/test_gaps.py",
     f"{UNIT}/ledger/test_kept_devices.py",
     f"{UNIT}/ledger/test_waves_by_cause.py",

@@ -8,11 +8,13 @@ from dataclasses import replace
 import pytest
 from hypothesis import given
 from hypothesis import strategies as st
+from scipy import optimize
 from scipy.integrate import solve_ivp  # type: ignore[import-untyped, unused-ignore]
 
 from setupcheck.physics.heating import (
     BRIGHT,
     DULL,
+    LUMPED_BELOW,
     Ring,
     carry_time,
     cooled_temperature,
@@ -206,3 +208,9 @@ def test_a_foil_cools_down_to_the_air_and_not_below() -> None:
     foil = Ring(bore=32, outside=104, length=2.6e-8, density=8700, specific_heat=376, emissivity=0.6)
     assert 20.0 <= cooled_temperature(foil, start=165, seconds=12, air=20) <= 165.0
     assert 20.0 <= cooled_temperature(foil, start=20, seconds=12, air=165) <= 165.0
+
+
+def test_below_the_least_biot_number_a_plate_is_of_one_temperature_to_some_five_percent() -> None:
+    """Slowest mode of a plate that cools on both sides: cos(z x/L) with z tan z = Bi, so its face is cos z of its middle."""
+    z = optimize.brentq(lambda z: z * math.tan(z) - LUMPED_BELOW, 1e-6, 1.5)
+    assert 0.045 < 1.0 - math.cos(z) < 0.05

@@ -5,8 +5,9 @@ from __future__ import annotations
 import pytest
 
 from setupcheck.errors import JobError
+from setupcheck.quantities.book import Open
 
-from .joint_text import changed, finding, reviewed
+from .joint_text import answer, changed, finding, reviewed
 
 RULES = ("FIT-003", "FIT-004", "HEAT-001")
 BORE, SEAT = "parts.ring.surfaces.bore", "parts.shaft.surfaces.seat"
@@ -90,3 +91,13 @@ def test_friction_without_a_row_asks_for_the_shop_s_own() -> None:
 def test_nothing_asked_is_nothing_judged() -> None:
     text = changed(("      must_carry: {torque: 50 N m}\n", ""))
     assert [] == [f for f in reviewed(text).evaluation.findings if f.rule == "FIT-003"]
+
+
+@pytest.mark.parametrize("name", ["fit.elastic", "fit.elastic_mises", "fit.elastic_tresca"])
+@pytest.mark.parametrize(("material", "part"), [("CuSn12-C", "ring"), ("42CrMo4", "shaft")])
+def test_every_elastic_limit_asks_for_the_strength_of_the_part_that_has_none(
+    name: str, material: str, part: str
+) -> None:
+    found = answer(changed((material, "C36000")), name)
+    assert isinstance(found, Open)
+    assert found.missing == (f"parts.{part}.properties.yield_strength",)
