@@ -202,7 +202,7 @@ def _cut_after(floor: Floor, part: str, name: str, op: int) -> bool:
 
 _PAIR = {"pair": "fit.pair"}
 _HERE = {"floor": "route.floor", "join": ":"}
-_MOST = {**_PAIR, "grip": "fit.grip_most"}
+_MOST = {**_PAIR, "grip": "fit.grip_most_elastic"}
 
 GROWING = (
     Quantity(
@@ -211,7 +211,7 @@ GROWING = (
         "um",
         1,
         growth_most,
-        {**_PAIR, "grip": "fit.grip_most"},
+        {**_PAIR, "grip": "fit.grip_most_elastic"},
         "largest growth of the tooth circle",
     ),
     Quantity(
@@ -220,7 +220,7 @@ GROWING = (
         "um",
         1,
         growth_least,
-        {**_PAIR, "grip": "fit.grip_least"},
+        {**_PAIR, "grip": "fit.grip_least_elastic"},
         "least growth of the tooth circle",
     ),
     Quantity(
@@ -238,7 +238,7 @@ GROWING = (
         "um",
         1,
         hole_closing,
-        {**_PAIR, "grip": "fit.grip_most"},
+        {**_PAIR, "grip": "fit.grip_most_elastic"},
         "closing of the shaft's hole",
     ),
     Quantity(
@@ -268,7 +268,7 @@ GROWING = (
         "",
         0,
         moved,
-        {**_HERE, **_PAIR, "most": "fit.bench_most", "least": "fit.bench_least", "op": "@op"},
+        {**_HERE, **_PAIR, "most": "fit.bench_most_elastic", "least": "fit.bench_least_elastic", "op": "@op"},
         "the finished size that the joint moves most",
     ),
     Quantity("fit.share_moved", "join", "%", 0, share_moved, {"moved": "fit.moved"}, "its movement over its limits"),

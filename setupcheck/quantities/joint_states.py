@@ -113,7 +113,7 @@ def _of(state: str) -> Iterator[Quantity]:
         {**_PAIR, "most": "fit.interference_most", "state": f"fit.{state}"},
         f"interference of the tightest pair at {at}",
     )
-    tight = {**_PAIR, "grip": f"fit.{state}_most"}
+    tight = {**_PAIR, "grip": f"fit.{state}_most_elastic"}
     yield Quantity(
         f"fit.{state}_pressure",
         "join",
@@ -135,7 +135,7 @@ def _of(state: str) -> Iterator[Quantity]:
         {**_PAIR, "least": "fit.interference_least", "smoothing": "fit.smoothing", "state": f"fit.{state}"},
         f"interference of the loosest pair at {at}, smoothed",
     )
-    loose = {**_PAIR, "grip": f"fit.{state}_least"}
+    loose = {**_PAIR, "grip": f"fit.{state}_least_elastic"}
     yield Quantity(
         f"fit.{state}_least_pressure",
         "join",
@@ -156,7 +156,7 @@ def _of(state: str) -> Iterator[Quantity]:
     )
 
 
-_MOST = {**_PAIR, "grip": "fit.grip_most"}
+_MOST = {**_PAIR, "grip": "fit.grip_most_elastic"}
 
 IN_STATES = (
     Quantity("fit.cold", "join", "", 0, coldest, {"service": "fit.service"}, "coldest state of service"),

@@ -97,7 +97,7 @@ PRESSING = (
         "kN",
         1,
         press_off_force,
-        {**_PAIR, "most": "fit.interference_most", "rubbing": "fit.rubbing"},
+        {**_PAIR, "most": "fit.interference_most_elastic", "rubbing": "fit.rubbing"},
         "force to press or pull the tightest pair off, cold",
     ),
     Quantity(
@@ -115,7 +115,7 @@ PRESSING = (
         "kN",
         1,
         press_force,
-        {**_PAIR, "most": "fit.interference_most", "rubbing": "fit.rubbing", "join": ":"},
+        {**_PAIR, "most": "fit.interference_most_elastic", "rubbing": "fit.rubbing", "join": ":"},
         "force at the end of pressing in",
     ),
     Quantity(

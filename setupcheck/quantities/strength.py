@@ -262,6 +262,7 @@ _HERE = {"floor": "route.floor", "join": ":"}
 _PAIR = {"pair": "fit.pair"}
 _PEAKS = {"peaks": "fit.peaks"}
 _LOOSE = {"least": "fit.interference_least", "smoothing": "fit.smoothing"}
+_LOOSE_ELASTIC = {**_LOOSE, "least": "fit.interference_least_elastic"}
 
 STRENGTH = (
     Quantity("fit.pair", "join", "", 0, pair, {**_HERE, "sizes": "fit.sizes"}, "materials and sections of the joint"),
@@ -330,13 +331,13 @@ STRENGTH = (
     ),
     Quantity("fit.weaker", "join", "", 0, weaker, {"limit": "fit.limit"}, "the part that gives first"),
     Quantity(
-        "fit.pressure_most", "join", "MPa", 1, pressure_most, {**_PAIR, "grip": "fit.grip_most"}, "highest pressure"
+        "fit.pressure_most", "join", "MPa", 1, pressure_most, {**_PAIR, "grip": "fit.grip_most_elastic"}, "highest pressure"
     ),
     Quantity(
-        "fit.pressure_least", "join", "MPa", 1, pressure_least, {**_PAIR, "grip": "fit.grip_least"}, "lowest pressure"
+        "fit.pressure_least", "join", "MPa", 1, pressure_least, {**_PAIR, "grip": "fit.grip_least_elastic"}, "lowest pressure"
     ),
     Quantity(
-        "fit.hoop", "join", "MPa", 1, hoop_most, {**_PAIR, "grip": "fit.grip_most"}, "hoop stress at the hub's bore"
+        "fit.hoop", "join", "MPa", 1, hoop_most, {**_PAIR, "grip": "fit.grip_most_elastic"}, "hoop stress at the hub's bore"
     ),
     Quantity(
         "fit.rubbing", "join", "", 0, rubbing, {**_HERE, **_PAIR, "op": "@op"}, "friction of the joint, low and high"
@@ -348,7 +349,7 @@ STRENGTH = (
         "kN",
         2,
         force_held,
-        {**_PAIR, "grip": "fit.grip_least", "friction": "fit.friction"},
+        {**_PAIR, "grip": "fit.grip_least_elastic", "friction": "fit.friction"},
         "force the loosest joint holds at its seat",
     ),
     Quantity(
@@ -369,7 +370,7 @@ STRENGTH = (
             torque_smoothed,
             {
                 **_PAIR,
-                "least": "fit.interference_least",
+                "least": "fit.interference_least_elastic",
                 "smoothing": f"fit.smoothing_{edition}",
                 "service": "fit.service",
                 "friction": "fit.friction",
@@ -402,11 +403,11 @@ STRENGTH = (
         "degC",
         0,
         holds_to,
-        {**_PAIR, **_LOOSE, "friction": "fit.friction", "asked": "fit.force_asked"},
+        {**_PAIR, **_LOOSE_ELASTIC, "friction": "fit.friction", "asked": "fit.force_asked"},
         "temperature up to which the joint holds what it must",
     ),
     Quantity(
-        "fit.loosens_at", "join", "degC", 0, loosens_at, {**_PAIR, **_LOOSE}, "temperature at which nothing interferes"
+        "fit.loosens_at", "join", "degC", 0, loosens_at, {**_PAIR, **_LOOSE_ELASTIC}, "temperature at which nothing interferes"
     ),
     Quantity(
         "fit.yields_below",

@@ -57,6 +57,7 @@ from setupcheck.quantities.usual import USUAL
 from setupcheck.quantities.ways import WAYS
 from setupcheck.quantities.wheel_over_balls import OVER_BALLS
 from setupcheck.quantities.wheel_sizes import WHEEL
+from setupcheck.quantities.within import WITHIN
 from setupcheck.quantities.worm_sizes import WORM
 
 ROUTE = (
@@ -309,6 +310,7 @@ TABLES: tuple[Quantity, ...] = (
     *STRENGTH,
     *FIT_STATED,
     *IN_STATES,
+    *WITHIN,
     *GROWING,
     *CHOOSING,
     *PRESSING,
