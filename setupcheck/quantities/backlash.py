@@ -20,7 +20,7 @@ from setupcheck.ledger.causes import Cause
 from setupcheck.ledger.figures import OverATurn
 from setupcheck.ledger.route import State
 from setupcheck.physics.materials import Range
-from setupcheck.quantities import backlash_read, growing, pairing, strength
+from setupcheck.quantities import backlash_read, growing, pairing, strength, within
 from setupcheck.quantities.backlash_read import AsRead
 from setupcheck.quantities.book import Open, OutOfRange, all_missing
 from setupcheck.quantities.causes import Entry, length_error, size_error
@@ -333,7 +333,7 @@ def _growth(floor: Floor, found: Drive) -> Account | Open:
 
 
 def growth(floor: Floor, join: Join, op: int) -> Span | Open:
-    """Least and largest growth of the teeth on diameter [mm]. Source: quantities.strength."""
+    """Least and largest growth of the teeth on diameter [mm]; open where a pair yields. Source: quantities.strength."""
     limits = sizes(floor, join)
     if not isinstance(limits, JointSizes):
         return limits if limits is not None else Span(0.0, 0.0)
@@ -345,7 +345,8 @@ def growth(floor: Floor, join: Join, op: int) -> Span | Open:
     if not isinstance(joint, pairing.Pair) or not isinstance(lost, float) or served is None or isinstance(served, Open):
         return Span(0.0, 0.0)
     try:
-        most = growing.growth_most(joint, strength.grip_most(joint, interference_most(limits), served))
+        tight = strength.grip_most(joint, interference_most(limits), served)
+        most = growing.growth_most(joint, within.tight(tight, None, within.limit(floor, joint)))
         least = growing.growth_least(joint, strength.grip_least(joint, interference_least(limits), lost, served))
     except OutOfRange as why:
         return Open(because=str(why))

@@ -8,10 +8,10 @@ from setupcheck.jobfile.setups import Join
 from setupcheck.ledger import figures
 from setupcheck.ledger.account import Account
 from setupcheck.ledger.causes import Cause, Mode
-from setupcheck.quantities import pairing, strength
+from setupcheck.quantities import pairing, strength, within
 from setupcheck.quantities.book import Open, OutOfRange
 from setupcheck.quantities.friction import Friction
-from setupcheck.quantities.joining import JointSizes, limits_of, sizes
+from setupcheck.quantities.joining import JointSizes, interference_most, limits_of, sizes
 from setupcheck.quantities.relations import Built
 from setupcheck.quantities.requirements import Stack
 from setupcheck.quantities.shop import Floor
@@ -20,7 +20,8 @@ from setupcheck.quantities.shop import Floor
 def torque(floor: Floor, stack: Stack) -> Built | Open:
     """Torque that a joint holds in service over the limits of its sizes, lowest friction, with the slip factor.
 
-    T = unit (U - smoothing + what the temperature takes), straight in bore and journal.  Source: quantities.strength.
+    T = unit (U - smoothing + what the temperature takes), straight in bore and journal.
+    Validity: all pairs elastic, so open where the tightest yields.  Source: quantities.strength.
     """
     found = _join(floor, stack)
     if isinstance(found, Open):
@@ -40,6 +41,7 @@ def torque(floor: Floor, stack: Stack) -> Built | Open:
     if opened or not isinstance(lost, float) or not isinstance(rubbing, Friction) or not isinstance(served, tuple):
         return Open(tuple(m for x in opened for m in x.missing), "; ".join(x.because for x in opened if x.because))
     try:
+        within.tight(strength.grip_most(pair, interference_most(limits), served), None, within.limit(floor, pair))
         unit = strength.torque_held(pair, strength.force_held(pair, 1.0, rubbing.low))
         taken = min(pair.at(0.0, "holding", t) for t in (*served, pairing.BENCH))
     except OutOfRange as why:

@@ -331,13 +331,31 @@ STRENGTH = (
     ),
     Quantity("fit.weaker", "join", "", 0, weaker, {"limit": "fit.limit"}, "the part that gives first"),
     Quantity(
-        "fit.pressure_most", "join", "MPa", 1, pressure_most, {**_PAIR, "grip": "fit.grip_most_elastic"}, "highest pressure"
+        "fit.pressure_most",
+        "join",
+        "MPa",
+        1,
+        pressure_most,
+        {**_PAIR, "grip": "fit.grip_most_elastic"},
+        "highest pressure",
     ),
     Quantity(
-        "fit.pressure_least", "join", "MPa", 1, pressure_least, {**_PAIR, "grip": "fit.grip_least_elastic"}, "lowest pressure"
+        "fit.pressure_least",
+        "join",
+        "MPa",
+        1,
+        pressure_least,
+        {**_PAIR, "grip": "fit.grip_least_elastic"},
+        "lowest pressure",
     ),
     Quantity(
-        "fit.hoop", "join", "MPa", 1, hoop_most, {**_PAIR, "grip": "fit.grip_most_elastic"}, "hoop stress at the hub's bore"
+        "fit.hoop",
+        "join",
+        "MPa",
+        1,
+        hoop_most,
+        {**_PAIR, "grip": "fit.grip_most_elastic"},
+        "hoop stress at the hub's bore",
     ),
     Quantity(
         "fit.rubbing", "join", "", 0, rubbing, {**_HERE, **_PAIR, "op": "@op"}, "friction of the joint, low and high"
@@ -407,7 +425,13 @@ STRENGTH = (
         "temperature up to which the joint holds what it must",
     ),
     Quantity(
-        "fit.loosens_at", "join", "degC", 0, loosens_at, {**_PAIR, **_LOOSE_ELASTIC}, "temperature at which nothing interferes"
+        "fit.loosens_at",
+        "join",
+        "degC",
+        0,
+        loosens_at,
+        {**_PAIR, **_LOOSE_ELASTIC},
+        "temperature at which nothing interferes",
     ),
     Quantity(
         "fit.yields_below",

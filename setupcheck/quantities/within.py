@@ -3,8 +3,10 @@
 from __future__ import annotations
 
 from setupcheck.jobfile.service import Warmth
-from setupcheck.quantities.book import OutOfRange, Quantity
+from setupcheck.quantities.book import Open, OutOfRange, Quantity
 from setupcheck.quantities.pairing import BENCH, Pair
+from setupcheck.quantities.shop import Floor
+from setupcheck.quantities.strength import limit_of
 
 Limit = tuple[float, str] | None
 """Interference up to which all is elastic [mm] and the weaker part in words; None where a strength is missing: FIT-004 asks
@@ -29,16 +31,22 @@ def elastic_only(grip: float, reached: float | None, limit: Limit, which: str) -
 
 
 def tight(grip: float, reached: float | None, limit: Limit) -> float:
-    """An interference of the tightest pair while it stays elastic [mm]. Validity, source: `elastic_only`."""
+    """An interference of the tightest pair while it stays elastic [mm].  Source: `elastic_only`, with its validity."""
     return elastic_only(grip, reached, limit, "tightest")
 
 
 def loose(grip: float, reached: float, limit: Limit) -> float:
-    """An interference of the loosest pair while that one stays elastic [mm]. Validity, source: `elastic_only`.
+    """An interference of the loosest pair while that one stays elastic [mm].  Source: `elastic_only`, with its validity.
 
     A tighter pair that yields keeps at least the pressure it yielded at and so no less than this one, cold or warm.
     """
     return elastic_only(grip, reached, limit, "loosest")
+
+
+def limit(floor: Floor, pair: Pair) -> Limit:
+    """Where a joint leaves its elastic range, None where that is not known. Source: quantities.strength."""
+    found = limit_of(floor, pair)
+    return None if isinstance(found, Open) else found
 
 
 def loosest_reaches(pair: Pair, least: float, service: tuple[Warmth, Warmth] | None) -> float:
@@ -78,13 +86,27 @@ WITHIN = (
     ),
     *(
         Quantity(
-            name + ELASTIC, "join", "um", 1, tight, {"grip": name, **_TIGHT}, f"{says}, where it stays elastic", _UNKNOWN
+            name + ELASTIC,
+            "join",
+            "um",
+            1,
+            tight,
+            {"grip": name, **_TIGHT},
+            f"{says}, where it stays elastic",
+            _UNKNOWN,
         )
         for name, says in _GRIPS.items()
     ),
     *(
         Quantity(
-            name + ELASTIC, "join", "um", 1, loose, {"grip": name, **_LOOSE}, f"{says}, where it stays elastic", _UNKNOWN
+            name + ELASTIC,
+            "join",
+            "um",
+            1,
+            loose,
+            {"grip": name, **_LOOSE},
+            f"{says}, where it stays elastic",
+            _UNKNOWN,
         )
         for name, says in _LOOSEST.items()
     ),
