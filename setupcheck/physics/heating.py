@@ -29,6 +29,9 @@ AIR_CONDUCTIVITY = 0.03
 """Of warm air in the gap [W/mK], about 80 degC. Source: tables of air, from memory."""
 LUMPED_BELOW = 0.1
 """Biot number below which a body has one temperature throughout, to some 5 %. Source: textbooks of heat transfer."""
+LARGEST_HEATED, LARGEST_CHILLED = 5000.0, 1500.0
+"""Largest outside of a part in warm or in cold still air [mm]: the film is known up to a Rayleigh number of 1e12, which is
+reached at 5.1 m up to 400 degC and at 1.58 m down to -205 degC. Computed here (`rayleigh_number`)."""
 _PARTS = 400  # of the integral over the temperature, which is steep near the air; our choice
 _STEPS = 100  # of the time integration; our choice, the tests compare with scipy and published times
 
@@ -235,24 +238,38 @@ def film_coefficient(*, surface: float, air: float, diameter: float) -> float:
     """Heat transfer of a horizontal cylinder in still air [W/m2K], temperatures in degC, diameter in mm.
 
     Nu = {0.60 + 0.387 Ra^(1/6) / [1 + (0.559/Pr)^(9/16)]^(8/27)}^2,  Ra = g (T_s - T_a) D^3 / (T_f nu a), kelvin
-    Validity: Ra <= 1e12, still air, a cylinder colder than it as well; faces and bore of a ring by the same value, 30 % either
-    way. Draught: more.
+    Validity: Ra <= 1e12, which LARGEST_HEATED and LARGEST_CHILLED keep; still air, a cylinder colder than it as well; faces and
+    bore of a ring by the same value, 30 % either way. Draught: more.
     Source: Churchill and Chu (1975), through textbooks; power fits of air from memory. With the
     tables of two textbooks in their place h changes by 0.1 and 0.9 % (tests/published).
 
     >>> round(film_coefficient(surface=165, air=23, diameter=100), 2)
     7.22
     """
+    conductivity, prandtl, rayleigh = _air(surface, air, diameter)
+    nusselt = (0.60 + 0.387 * rayleigh ** (1 / 6) / (1.0 + (0.559 / prandtl) ** (9 / 16)) ** (8 / 27)) ** 2
+    return float(nusselt * conductivity / (diameter / 1000.0))
+
+
+def rayleigh_number(*, surface: float, air: float, diameter: float) -> float:
+    """How hard warm air rises along a cylinder [1], as `film_coefficient` has it; degC, mm. Source: as there.
+
+    >>> f"{rayleigh_number(surface=165, air=23, diameter=100):.1e}"
+    '4.8e+06'
+    """
+    return _air(surface, air, diameter)[2]
+
+
+def _air(surface: float, air: float, diameter: float) -> tuple[float, float, float]:
+    """Conductivity [W/mK], Prandtl number and Rayleigh number of the air about a cylinder."""
     mean = (surface + air) / 2.0 + KELVIN
     conductivity = 0.0241 * (mean / KELVIN) ** 0.81
     viscosity = 1.716e-5 * (mean / KELVIN) ** 0.7
     density = 1.2922 * KELVIN / mean
     prandtl = viscosity * 1007.0 / conductivity
     nu, spread = viscosity / density, conductivity / (density * 1007.0)
-    size = diameter / 1000.0
-    rayleigh = GRAVITY * abs(surface - air) * size**3 / (mean * nu * spread)
-    nusselt = (0.60 + 0.387 * rayleigh ** (1 / 6) / (1.0 + (0.559 / prandtl) ** (9 / 16)) ** (8 / 27)) ** 2
-    return float(nusselt * conductivity / size)
+    rayleigh = GRAVITY * abs(surface - air) * (diameter / 1000.0) ** 3 / (mean * nu * spread)
+    return conductivity, prandtl, rayleigh
 
 
 def heat_loss(ring: Ring, *, temperature: float, air: float, film: float | None = None) -> float:

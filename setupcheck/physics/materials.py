@@ -43,6 +43,12 @@ COLD = -20.0
 Our screening choice."""
 MEANS_END = 200.0
 """degC up to which the expansion means of heating are meant: most are stated from 20 to 100 or 200 degC (from memory)."""
+HEATED_END = 400.0
+"""degC up to which the low end of a mean serves for a hub that is heated: metals grow faster the hotter they are, until steel
+changes its structure, from about 700. Our screening choice."""
+COLD_END = -205.0
+"""degC down to which the means of cooling are meant: stated to -196 (rules/data/materials.yaml), and the error of a bath with it.
+Our screening choice."""
 
 End = Literal["low", "high"]
 Part = Literal["hub", "shaft"]
@@ -155,9 +161,15 @@ def expansion_for(question: Question, part: Part, material: Material, *, tempera
     holding:   hub as large, shaft as small as they can be at that temperature
     all others: hub as small, shaft as large
     Large is the high end above 20 degC and the low end below it; below COLD the colder table (`cooling`) is used.
-    Validity: up to MEANS_END; above it true means are higher, which is safe for a hub at joining and not for holding.
-    Source: derived here.
+    Validity: COLD_END to MEANS_END; above it true means are higher, which is safe for a hub at joining, up to HEATED_END.
+    Raises: ValueError beyond.  Source: derived here.
     """
+    end_of_means = HEATED_END if (question, part) == ("joining", "hub") else MEANS_END
+    if not COLD_END <= temperature <= end_of_means:
+        raise ValueError(
+            f"the {part} at {temperature:.0f} degC: how much it has grown or shrunk is known from {COLD_END:g} to "
+            f"{end_of_means:g} degC alone"
+        )
     large = (part == "hub") == (question == "holding")
     cold = temperature < REFERENCE_TEMPERATURE
     end: End = "high" if large != cold else "low"

@@ -5,12 +5,26 @@ from __future__ import annotations
 from setupcheck.jobfile.heating import Heat
 from setupcheck.jobfile.models import Round
 from setupcheck.jobfile.setups import Join
-from setupcheck.physics.heating import DULL, Ring, cooled_temperature
-from setupcheck.physics.materials import expansion_for
-from setupcheck.quantities.book import Known, Open, Quantity, in_range
+from setupcheck.notation import fixed
+from setupcheck.physics.heating import (
+    DULL,
+    LARGEST_CHILLED,
+    LUMPED_BELOW,
+    Ring,
+    biot_number,
+    cooled_temperature,
+    heat_loss,
+)
+from setupcheck.physics.materials import Material, expansion_for
+from setupcheck.quantities.book import Known, Open, OutOfRange, Quantity, in_range
+from setupcheck.quantities.material_classes import usual_for
 from setupcheck.quantities.shop import Floor
 from setupcheck.quantities.stuff import material_of
 from setupcheck.quantities.typical import typical
+
+BIOT_DIGITS = 4
+_LEAST_APART = 1.0
+"""Kelvin between part and room that the film is taken at where there are less. Source: our screening choice."""
 
 
 def cold_error(heat: Heat) -> tuple[float, str] | None:
@@ -41,6 +55,7 @@ def out_of_the_cold(join: Join, op: int, way: float = +1.0) -> tuple[float, froz
 def seat_of(floor: Floor, join: Join, emissivity: float) -> Ring | Open | None:
     """The seat as a cylinder with bare ends, its hole open; None where it is no plain round surface.
 
+    Raises: OutOfRange above LARGEST_CHILLED.
     Source: lumped capacity (physics.heating). The rest of the shaft is as cold and only helps.
     """
     ref = floor.loaded.ref(join.inner)
@@ -50,6 +65,10 @@ def seat_of(floor: Floor, join: Join, emissivity: float) -> Ring | Open | None:
     found = material_of(floor, ref.part)
     if isinstance(found, Open):
         return found
+    if seat.diameter.value > LARGEST_CHILLED:
+        raise OutOfRange(
+            f"a shaft of {seat.diameter.value:g} mm: how fast still air warms it is known up to {LARGEST_CHILLED:g} mm"
+        )
     with in_range:
         return Ring(
             bore=seat.hole or 0.0,
@@ -61,10 +80,32 @@ def seat_of(floor: Floor, join: Join, emissivity: float) -> Ring | Open | None:
         )
 
 
+def one_temperature(which: str, turns: str, ring: Ring, of: Material | Open, *, at: float, room: float) -> float:
+    """Biot number of a part in still air [1]: h (V/A) / k, h of convection and radiation.
+
+    which, turns  for the message: `hub`, `cools`;  at  the part as it comes out of oven or cold [degC]
+    k: as stated or listed; of an unlisted material that does not state it, the least that its class, or any metal, has.
+    Raises: OutOfRange from 0.1 on, where one temperature for the whole part no longer holds.
+    Source: lumped capacity criterion, textbooks; physics.heating; rules/data/materials.yaml, classes.yaml.
+    """
+    assert not isinstance(of, Open)  # the ring has its density
+    away = at if abs(at - room) >= _LEAST_APART else room + _LEAST_APART
+    film = heat_loss(ring, temperature=away, air=room) / (ring.surface * (away - room))
+    k = of.conductivity.value if of.conductivity is not None else usual_for(of.of_class, of.family).conductivity.low
+    found = biot_number(film, depth=ring.depth, conductivity=k)
+    if found >= LUMPED_BELOW:
+        raise OutOfRange(
+            f"the {which} {turns} from the outside in (Biot number {fixed(found, BIOT_DIGITS)}): one temperature for all of it "
+            f"holds below {LUMPED_BELOW:g} only, so what it loses or gains on the way is not known"
+        )
+    return found
+
+
 def shaft_gain(floor: Floor, join: Join, op: int) -> float | Open | None:
     """What a chilled shaft gains on its way to the hub, in still air [K]: convection and radiation onto its seat.
 
     Frost, gloves and the bench warm it more.  None where nothing chills it.
+    Raises: OutOfRange for a shaft that is not of one temperature throughout.
     Source: physics.heating (Churchill and Chu, Stefan-Boltzmann).
     """
     room = floor.loaded.job.room
@@ -77,6 +118,9 @@ def shaft_gain(floor: Floor, join: Join, op: int) -> float | Open | None:
         return Open(tuple(missing), seat.because if isinstance(seat, Open) else "")
     if seat is None:
         return None
+    one_temperature(
+        "shaft", "warms", seat, material_of(floor, floor.loaded.ref(join.inner).part), at=start[0], room=room
+    )
     return max(cooled_temperature(seat, start=start[0], seconds=join.heat.carry, air=room) - start[0], 0.0)
 
 
@@ -108,11 +152,12 @@ def kind_of_cold_error(floor: Floor, join: Join, at: float) -> str | None:
 def contraction(floor: Floor, join: Join, at: float) -> float:
     """Mean expansion of the shaft between 20 degC and a temperature, the end that is safe for joining [1/K].
 
-    Source: physics.materials.
+    Raises: OutOfRange where no expansion is known.  Source: physics.materials.
     """
     found = material_of(floor, floor.loaded.ref(join.inner).part)
     assert not isinstance(found, Open)  # `heat.needed` has asked for it
-    return expansion_for("joining", "shaft", found, temperature=at).value
+    with in_range:
+        return expansion_for("joining", "shaft", found, temperature=at).value
 
 
 _HERE = {"floor": "route.floor", "join": ":"}

@@ -112,10 +112,19 @@ def ridge_reach(shape: Shape) -> float | None:
 
 
 def half_face(shape: Shape) -> float | Open:
-    """Half the width of the wheel's teeth [mm]. Source: the job file."""
-    width = shape.cut.drive.face_width
-    wheel = shape.cut.drive.wheel
-    return width / 2.0 if width is not None else Open((f"parts.{wheel.part}.surfaces.{wheel.surface}.width",))
+    """Half the width of the wheel's teeth [mm], as far as closed forms tell what is at its ends.
+
+    Raises: OutOfRange for teeth wider than the worm's pitch diameter.  Source: the job file; worm.cutter, second order.
+    """
+    d = shape.cut.drive
+    if d.face_width is None:
+        return Open((f"parts.{d.wheel.part}.surfaces.{d.wheel.surface}.width",))
+    if d.face_width > d.pitch_diameter:
+        raise OutOfRange(
+            f"teeth {d.face_width:g} mm wide on a worm of {d.pitch_diameter:g} mm: closed forms hold near the mid-plane and not "
+            f"at their ends. Write contact: exact (mesh)"
+        )
+    return d.face_width / 2.0
 
 
 def relief(shape: Shape, half_face: float) -> float:

@@ -8,7 +8,7 @@ from setupcheck.jobfile.names import Ref
 from setupcheck.jobfile.setups import Join
 from setupcheck.ledger.account import Account
 from setupcheck.ledger.causes import Cause
-from setupcheck.quantities.book import Known, Open, Quantity, in_range
+from setupcheck.quantities.book import Known, Open, OutOfRange, Quantity, in_range
 from setupcheck.quantities.shop import Floor
 from setupcheck.quantities.sized import at_reference
 from setupcheck.quantities.typical import typical
@@ -155,7 +155,8 @@ def needed(floor: Floor, join: Join, most: float, sizes: JointSizes, shaft_at: f
     opened = [x for x in (hub, shaft) if isinstance(x, Open)]
     if opened or isinstance(hub, Open) or isinstance(shaft, Open):
         return Open(tuple(m for x in opened for m in x.missing), "; ".join(x.because for x in opened if x.because))
-    shaft_expansion = expansion_for("joining", "shaft", shaft, temperature=shaft_at).value
+    with in_range:
+        shaft_expansion = expansion_for("joining", "shaft", shaft, temperature=shaft_at).value
 
     def at(hub_expansion: float) -> float:
         return joining_temperature(
@@ -209,9 +210,17 @@ def _planned(floor: Floor, join: Join, op: int, way: float) -> Known | Open | No
 def planned_low(floor: Floor, join: Join, op: int) -> Known | Open | None:
     """Planned heat less the error of the oven [degC]; what is lost on the way is not taken off.
 
+    Raises: OutOfRange above HEATED_END, as all that it opens is worked out with the hub's mean expansion.
     Source: the job file; a typical error of the heat source where none is stated.
     """
-    return _planned(floor, join, op, -1.0)
+    from setupcheck.physics.materials import HEATED_END
+
+    found = _planned(floor, join, op, -1.0)
+    if isinstance(found, Known) and isinstance(found.value, float | int) and found.value > HEATED_END:
+        raise OutOfRange(
+            f"a hub of {found.value:.0f} degC: how far it has grown is known up to {HEATED_END:g} degC alone"
+        )
+    return found
 
 
 def planned_high(floor: Floor, join: Join, op: int) -> Known | Open | None:

@@ -11,6 +11,7 @@ from setupcheck.physics.carrying import time_to_close
 from setupcheck.physics.heating import (
     BRIGHT,
     DULL,
+    LARGEST_HEATED,
     REFERENCE_TEMPERATURE,
     Ring,
     cooled_temperature,
@@ -45,6 +46,8 @@ def ring_of(pair: Pair, emissivity: float = DULL) -> Ring:
     thinnest = min(s.outside for s in pair.sections)
     if thinnest <= pair.diameter:  # its volume would be negative, and the mean below would hide it
         raise OutOfRange(f"an outside of {thinnest:g} mm is no hub on a joint of {pair.diameter:g} mm")
+    if thinnest > LARGEST_HEATED:
+        raise OutOfRange(f"a hub of {thinnest:g} mm: how fast still air cools it is known up to {LARGEST_HEATED:g} mm")
     length = math.fsum(s.length for s in pair.sections)
     squares = math.fsum(s.length * s.outside**2 for s in pair.sections) / length
     with in_range:
@@ -69,10 +72,12 @@ def carry_loss(
     return _loss(floor, join, pair, planned, op, DULL)
 
 
-def carry_loss_bright(floor: Floor, join: Join, pair: Pair, planned: float, op: int) -> float | Open | None:
+def carry_loss_bright(
+    floor: Floor, join: Join, pair: Pair, planned: float, op: int, biot: float | None = None
+) -> float | Open | None:
     """As `carry_loss`, of bright machined metal, which radiates less [K]: between the two lies what is lost.
 
-    Source: physics.heating.
+    `biot`: as there.  Source: physics.heating.
     """
     return _loss(floor, join, pair, planned, op, BRIGHT)
 
@@ -269,7 +274,7 @@ HEAT = (
         "K",
         1,
         carry_loss_bright,
-        {**_HERE, **_PAIR, "planned": "heat.planned_low", "op": "@op"},
+        {**_HERE, **_PAIR, "planned": "heat.planned_low", "op": "@op", "biot": "heat.biot"},
         "heat lost on the way to the shaft by bright metal",
     ),
     Quantity(

@@ -122,7 +122,14 @@ def _lasts(
 
 
 def carry_allowed(
-    floor: Floor, join: Join, pair: Pair, needed: float, shaft_at: float, op: int, planned: float | None
+    floor: Floor,
+    join: Join,
+    pair: Pair,
+    needed: float,
+    shaft_at: float,
+    op: int,
+    planned: float | None,
+    biot: float | None = None,
 ) -> float | Open | None:
     """Time in still air until hub and shaft just keep the wanted play [s], dull metal; None where it is never reached.
 
@@ -132,28 +139,56 @@ def carry_allowed(
 
 
 def carry_allowed_bright(
-    floor: Floor, join: Join, pair: Pair, needed: float, shaft_at: float, op: int, planned: float | None
+    floor: Floor,
+    join: Join,
+    pair: Pair,
+    needed: float,
+    shaft_at: float,
+    op: int,
+    planned: float | None,
+    biot: float | None = None,
 ) -> float | Open | None:
     """As `carry_allowed`, of bright metal, which keeps its heat longer [s]. Source: physics.carrying."""
     return _lasts(floor, join, pair, needed, shaft_at, op, planned, eps=BRIGHT)
 
 
 def carry_with_spare(
-    floor: Floor, join: Join, pair: Pair, needed: float, shaft_at: float, op: int, planned: float | None
+    floor: Floor,
+    join: Join,
+    pair: Pair,
+    needed: float,
+    shaft_at: float,
+    op: int,
+    planned: float | None,
+    biot: float | None = None,
 ) -> float | Open | None:
     """Time in still air that leaves what HEAT-003 asks above the need [s], dull metal. Source: physics.carrying."""
     return _lasts(floor, join, pair, needed, shaft_at, op, planned, eps=DULL, spare=SPARE)
 
 
 def carry_until_bite(
-    floor: Floor, join: Join, pair: Pair, needed: float, shaft_at: float, op: int, planned: float | None
+    floor: Floor,
+    join: Join,
+    pair: Pair,
+    needed: float,
+    shaft_at: float,
+    op: int,
+    planned: float | None,
+    biot: float | None = None,
 ) -> float | Open | None:
     """Time in still air until the tightest pair has no play left [s], dull metal. Source: physics.carrying."""
     return _lasts(floor, join, pair, needed, shaft_at, op, planned, eps=DULL, until_bite=True)
 
 
 def carry_until_bite_bright(
-    floor: Floor, join: Join, pair: Pair, needed: float, shaft_at: float, op: int, planned: float | None
+    floor: Floor,
+    join: Join,
+    pair: Pair,
+    needed: float,
+    shaft_at: float,
+    op: int,
+    planned: float | None,
+    biot: float | None = None,
 ) -> float | Open | None:
     """As `carry_until_bite`, of bright metal [s]. Source: physics.carrying."""
     return _lasts(floor, join, pair, needed, shaft_at, op, planned, eps=BRIGHT, until_bite=True)
@@ -162,8 +197,16 @@ def carry_until_bite_bright(
 _HERE = {"floor": "route.floor", "join": ":"}
 _NEEDED = {"needed": "heat.needed"}
 _SHAFT = {"shaft_at": "heat.shaft_at"}
-_WAY = {**_HERE, "pair": "fit.pair", **_NEEDED, **_SHAFT, "op": "@op", "planned": "heat.planned_low"}
-_COLD_ALONE = {"planned": None}
+_WAY = {
+    **_HERE,
+    "pair": "fit.pair",
+    **_NEEDED,
+    **_SHAFT,
+    "op": "@op",
+    "planned": "heat.planned_low",
+    "biot": "heat.biot",  # whether the hub is of one temperature throughout; `shaft_at` asks the same of the shaft
+}
+_COLD_ALONE = {"planned": None, "biot": None}
 
 OPENING = (
     Quantity(

@@ -70,15 +70,19 @@ class Pair:
             )
 
     def at(self, interference: float, question: Question, state: Warmth) -> float:
-        """Interference when hub and shaft have their temperatures, expansions safe for the question [mm]."""
-        return interference_at(
-            interference,
-            diameter=self.diameter,
-            hub_expansion=expansion_for(question, "hub", self.hub, temperature=state.hub).value,
-            hub_temperature=state.hub,
-            shaft_expansion=expansion_for(question, "shaft", self.shaft, temperature=state.shaft).value,
-            shaft_temperature=state.shaft,
-        )
+        """Interference when hub and shaft have their temperatures, expansions safe for the question [mm].
+
+        Raises: OutOfRange for a temperature that no expansion is known for.
+        """
+        with in_range:
+            return interference_at(
+                interference,
+                diameter=self.diameter,
+                hub_expansion=expansion_for(question, "hub", self.hub, temperature=state.hub).value,
+                hub_temperature=state.hub,
+                shaft_expansion=expansion_for(question, "shaft", self.shaft, temperature=state.shaft).value,
+                shaft_temperature=state.shaft,
+            )
 
 
 def pair(floor: Floor, join: Join, sizes: JointSizes) -> Pair | Open | None:

@@ -9,9 +9,7 @@ from setupcheck.jobfile.setups import Join
 from setupcheck.notation import show
 from setupcheck.physics import interference as fits
 from setupcheck.physics.criteria import Criterion, elastic_interference
-from setupcheck.physics.heating import holding_temperature, loosening_temperature
-from setupcheck.physics.materials import COLD, expansion_for
-from setupcheck.quantities.book import Open, OutOfRange, Quantity
+from setupcheck.quantities.book import Open, Quantity
 from setupcheck.quantities.friction import Friction
 from setupcheck.quantities.pairing import (
     BENCH,
@@ -202,57 +200,6 @@ def force_asked(join: Join, pair: Pair) -> float | None:
     return math.hypot(axial, 2.0 * torque / pair.diameter)
 
 
-def holds_to(pair: Pair, least: float, smoothing: float, friction: float, asked: float) -> float | None:
-    """Temperature of the whole joint up to which the loosest pair still holds what it must [degC]; None where it holds at any.
-
-    Source: physics.heating.
-    """
-    if asked <= 0.0:
-        return None  # without a load it holds until it is loose
-    unit = force_held(pair, 1.0, friction)  # for each mm of interference, as pressure is straight in it
-    return _finite(
-        holding_temperature(least - smoothing, needed=asked / unit, diameter=pair.diameter, **_expansions(pair))
-    )
-
-
-def loosens_at(pair: Pair, least: float, smoothing: float) -> float | None:
-    """Temperature of the whole joint at which the loosest pair has no interference left [degC]; None where none does that.
-
-    Source: physics.heating.
-    """
-    return _finite(loosening_temperature(least - smoothing, diameter=pair.diameter, **_expansions(pair)))
-
-
-def yields_below(pair: Pair, most: float, limit: tuple[float, str]) -> float | None:
-    """Temperature of the whole joint below which the tightest pair leaves its elastic range [degC].
-
-    T = 20 - (U_elastic - U_max)/(D (alpha_A - alpha_I)), expansions as for strength in mild cold; None where it does so at
-    20 degC already, or in no cold down to COLD.  Source: physics.heating.
-    """
-    per_kelvin = pair.at(0.0, "strength", Warmth(REFERENCE - 1.0, REFERENCE - 1.0))  # what a kelvin of cold adds
-    if limit[0] <= most or per_kelvin <= 0.0:
-        return None
-    at = REFERENCE - (limit[0] - most) / per_kelvin
-    return at if at >= COLD else None
-
-
-def _expansions(pair: Pair) -> dict[str, float]:
-    warm = 100.0
-    return {
-        "hub_expansion": expansion_for("holding", "hub", pair.hub, temperature=warm).value,
-        "shaft_expansion": expansion_for("holding", "shaft", pair.shaft, temperature=warm).value,
-    }
-
-
-def _finite(temperature: float) -> float | None:
-    """None where no warmth loosens the joint, because the hub does not outgrow its shaft."""
-    if temperature == math.inf:
-        return None
-    if temperature >= REFERENCE:
-        return temperature
-    raise OutOfRange("the loosest pair does not hold even at 20 degC")
-
-
 def length_ratio(pair: Pair) -> float:
     """Length of the joint over its diameter. Source: the drawing."""
     return math.fsum(s.length for s in pair.sections) / pair.diameter
@@ -262,7 +209,6 @@ _HERE = {"floor": "route.floor", "join": ":"}
 _PAIR = {"pair": "fit.pair"}
 _PEAKS = {"peaks": "fit.peaks"}
 _LOOSE = {"least": "fit.interference_least", "smoothing": "fit.smoothing"}
-_LOOSE_ELASTIC = {**_LOOSE, "least": "fit.interference_least_elastic"}
 
 STRENGTH = (
     Quantity("fit.pair", "join", "", 0, pair, {**_HERE, "sizes": "fit.sizes"}, "materials and sections of the joint"),
@@ -414,33 +360,6 @@ STRENGTH = (
         force_asked,
         {"join": ":", **_PAIR},
         "force at the seat the joint must carry",
-    ),
-    Quantity(
-        "fit.holds_to",
-        "join",
-        "degC",
-        0,
-        holds_to,
-        {**_PAIR, **_LOOSE_ELASTIC, "friction": "fit.friction", "asked": "fit.force_asked"},
-        "temperature up to which the joint holds what it must",
-    ),
-    Quantity(
-        "fit.loosens_at",
-        "join",
-        "degC",
-        0,
-        loosens_at,
-        {**_PAIR, **_LOOSE_ELASTIC},
-        "temperature at which nothing interferes",
-    ),
-    Quantity(
-        "fit.yields_below",
-        "join",
-        "degC",
-        0,
-        yields_below,
-        {**_PAIR, "most": "fit.interference_most", "limit": "fit.limit"},
-        "temperature below which the tightest pair yields",
     ),
     Quantity("fit.length_ratio", "join", "1", 2, length_ratio, _PAIR, "length of the joint over its diameter"),
 )

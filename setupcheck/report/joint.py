@@ -36,7 +36,10 @@ BENEATH: tuple[tuple[str, ...], ...] = (
     ("the loosest holds {fit.slip_safety} times what it must in service; the torques above are that over 1.2",),
     (
         "with hub and shaft equally warm it holds what it must up to {fit.holds_to} and is loose at {fit.loosens_at}",
+        "with hub and shaft equally warm it holds what it must up to {fit.holds_to} and is not loose up to {fit.tight_to}, as "
+        "far as expansions are known",
         "with hub and shaft equally warm it is loose at {fit.loosens_at}",
+        "with hub and shaft equally warm it is not loose up to {fit.tight_to}, as far as expansions are known",
     ),
     ("the tightest pair yields below {fit.yields_below}",),
     (

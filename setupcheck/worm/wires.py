@@ -8,6 +8,9 @@ from collections.abc import Callable
 from setupcheck.record import record
 from setupcheck.worm.geometry import above_zero, steep_enough
 
+STEEPEST = math.radians(25.0)
+"""Lead angle up to which wires are computed [rad]: so far they were compared with another way of solving (tests/published)."""
+
 
 @record
 class OverWires:
@@ -64,6 +67,15 @@ def _seated(
     )
 
 
+def _not_too_steep(starts: int, axial_module: float, reference_diameter: float) -> None:
+    lead_angle = math.atan(starts * axial_module / reference_diameter)
+    if lead_angle > STEEPEST:
+        raise ValueError(
+            f"a lead angle of {math.degrees(lead_angle):.1f} deg is more than the {math.degrees(STEEPEST):g} deg up to which "
+            f"wires are computed: measure the thread with a gear tooth caliper, and enter thread_thickness"
+        )
+
+
 def _falling_root(of: Callable[[float], float], low: float, high: float) -> float:
     """Zero of a steady function between two ends of opposite sign, by halving with a chord step inside."""
     at_low, at_high = of(low), of(high)
@@ -98,8 +110,8 @@ def over_wires(
     thread_thickness  axial, at the reference diameter [mm]; the groove is the axial pitch less this
     tip_diameter, root_diameter  where given, the wire must touch between them, stand proud and clear the root
     The third wire of a worm with several starts must lie in the groove of the same thread.
-    Validity: lead angle up to 20 deg compared with an independent solve; straight axial flanks; wires and anvils rigid.
-    Raises: ValueError for sizes not above zero, no groove left, or a wire that does not fit.
+    Validity: lead angle up to STEEPEST, compared with an independent solve; straight axial flanks; wires and anvils rigid.
+    Raises: ValueError beyond it, for sizes not above zero, no groove left, or a wire that does not fit.
     Source: derived (`_seated`); reproduces the table of Machinery's Handbook, 31st ed., p. 2136, to 1e-4 of the pitch.
 
     >>> m = over_wires(starts=1, axial_module=2.5, reference_diameter=30.0, pressure_angle=math.radians(20.0),
@@ -112,6 +124,7 @@ def over_wires(
     steep_enough(pressure_angle=pressure_angle)
     groove = math.pi * axial_module - thread_thickness
     above_zero(groove_width=groove)
+    _not_too_steep(starts, axial_module, reference_diameter)
     radius, p = reference_diameter / 2.0, starts * axial_module / 2.0
 
     def seat(rho: float) -> _Seated:
@@ -132,7 +145,7 @@ def thickness_over_wires(
 ) -> float:
     """Axial thread thickness at the reference diameter from the size measured over three wires [mm].
 
-    Raises: ValueError for sizes not above zero, or a size no thread of this pitch gives.
+    Raises: ValueError for sizes not above zero, a lead angle above STEEPEST, or a size no thread of this pitch gives.
     Source: `over_wires` turned round, exact.
 
     >>> round(thickness_over_wires(size=35.5693, starts=1, axial_module=2.5, reference_diameter=30.0,
@@ -141,6 +154,7 @@ def thickness_over_wires(
     """
     above_zero(size=size, starts=starts, axial_module=axial_module, reference_diameter=reference_diameter, wire=wire)
     steep_enough(pressure_angle=pressure_angle)
+    _not_too_steep(starts, axial_module, reference_diameter)
     radius, p, axis = reference_diameter / 2.0, starts * axial_module / 2.0, (size - wire) / 2.0
 
     def seat(rho: float) -> _Seated:
@@ -169,6 +183,7 @@ def best_wire(
     steep_enough(pressure_angle=pressure_angle)
     groove = math.pi * axial_module - thread_thickness
     above_zero(groove_width=groove)
+    _not_too_steep(starts, axial_module, reference_diameter)
     radius, p = reference_diameter / 2.0, starts * axial_module / 2.0
     return _falling_root(
         lambda w: (

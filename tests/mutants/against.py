@@ -58,6 +58,7 @@ TESTS: dict[str, tuple[str, ...]] = {
     ),
     "setupcheck.quantities.pairing": JOINTS,
     "setupcheck.quantities.strength": JOINTS,
+    "setupcheck.quantities.loosening": JOINTS,
 }
 AREAS = {
     "ledger": LEDGER,

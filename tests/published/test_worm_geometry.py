@@ -32,6 +32,7 @@ WORMS = [
     (2, 3.0, 36.0, 20.0, 4.94, 42.6048),
     (1, 1.5, 22.0, 20.0, 2.50, 25.3504),
 ]
+STEEP = (5, 2.0, 21.5, 20.0, 3.2)  # 24.9 deg
 
 
 def over(starts: int, module: float, diameter: float, alpha_deg: float, wire: float) -> wires.OverWires:
@@ -60,7 +61,7 @@ def solved(starts: int, module: float, diameter: float, alpha_deg: float, wire: 
         return math.sqrt(best.fun)
 
     def axis(swing: float) -> float:
-        low, high = diameter / 2.0, diameter / 2.0 + wire
+        low, high = diameter / 2.0 - 0.4 * wire, diameter / 2.0 + 0.5 * wire
         return float(brentq(lambda r: distance(r, swing) - wire / 2.0, low, high, xtol=1e-9))
 
     lead_angle = math.atan(2.0 * p / diameter)
@@ -97,7 +98,9 @@ def test_a_size_computed_before_comes_out_again(row: tuple[int, float, float, fl
     assert size == pytest.approx(over(*worm).size, abs=6e-5)
 
 
-@pytest.mark.parametrize("worm", [WORMS[0][:5], WORMS[2][:5], (4, 2.0, 24.0, 20.0, 3.2), (1, 1.5, 22.0, 15.0, 2.7)])
+@pytest.mark.parametrize(
+    "worm", [WORMS[0][:5], WORMS[2][:5], (4, 2.0, 24.0, 20.0, 3.2), (1, 1.5, 22.0, 15.0, 2.7), STEEP]
+)
 def test_the_exact_wires_agree_with_a_numerical_search(worm: tuple[int, float, float, float, float]) -> None:
     assert solved(*worm) == pytest.approx(over(*worm).size, abs=1e-7)
 
@@ -163,3 +166,8 @@ def test_the_throat_radius_is_the_worms_pitch_radius_less_one_addendum() -> None
     sizes = geometry.wheel_sizes(axial_module=2.5, reference_diameter=30.0, wheel_teeth=40, shift=0.3)
     assert 15.0 - 2.5 == pytest.approx(sizes.throat_radius)
     assert 105.0 + 2.0 * 0.75 == pytest.approx(sizes.throat_diameter)
+
+
+def test_steeper_threads_than_were_compared_are_refused() -> None:
+    with pytest.raises(ValueError, match=r"lead angle of 25\.5 deg is more than the 25 deg"):
+        over(5, 2.0, 21.0, 20.0, 3.2)

@@ -2,9 +2,14 @@
 
 from __future__ import annotations
 
+import re
+
 import pytest
 
-from setupcheck.quantities.book import Known, Open
+from setupcheck.physics.heating import DULL, LARGEST_CHILLED, LARGEST_HEATED, Ring, rayleigh_number
+from setupcheck.quantities.book import Known, Open, OutOfRange
+from setupcheck.quantities.chilling import one_temperature
+from setupcheck.quantities.material_data import material
 from tests.unit.quantities.joint_text import answer, changed, finding, number, reviewed
 
 # journal 0.5 mm over its nominal in a 60 mm bore: far beyond what bronze stands (all sizes invented)
@@ -94,3 +99,59 @@ def test_up_to_the_limit_the_figures_stand() -> None:
     assert number(TOO_TIGHT, "fit.grip_most") > number(TOO_TIGHT, "fit.elastic")
     for name in (*OF_THE_TIGHTEST, *OF_THE_LOOSEST):
         assert isinstance(answer(changed(), name), Known), name
+
+
+@pytest.mark.parametrize(
+    ("job", "says"),
+    [
+        (
+            changed(("serves_at: [10 degC, 25 degC]", "serves_at: [10 degC, 210 degC]")),
+            "at 210 degC: .* -205 to 200 degC",
+        ),
+        (changed(("serves_at: [10 degC", "serves_at: [-206 degC")), "at -206 degC: .* -205 to 200 degC"),
+    ],
+    ids=["too hot", "too cold"],
+)
+def test_a_service_beyond_what_expansions_are_known_for_is_open(job: str, says: str) -> None:
+    for name in ("fit.grip_most", "fit.grip_least"):
+        found = answer(job, name)
+        assert isinstance(found, Open), (name, found)
+        assert re.search(says, found.because), found.because
+    assert finding(job, "FIT-003").verdict == "open"
+    assert finding(job, "FIT-004").verdict == "open"
+
+
+def test_a_hub_hotter_than_its_expansion_is_known_for_is_open_and_still_too_hot() -> None:
+    job = changed(("hub: 190 degC", "hub: 420 degC"))
+    for name in ("heat.planned_low", "heat.at_shaft", "heat.opens_by_heat", "heat.carry_loss", "heat.carry_allowed"):
+        found = answer(job, name)
+        assert isinstance(found, Open), (name, found)
+    assert "a hub of 415 degC: how far it has grown is known up to 400 degC" in str(answer(job, "heat.planned_low"))
+    assert finding(job, "HEAT-001").verdict == "open"
+    assert finding(job, "HEAT-002").verdict == "fail"
+
+
+def test_a_joint_that_would_hold_beyond_what_is_known_of_it_says_how_far_it_is_known() -> None:
+    # steel on steel, 53 um less what is smoothed: the scatter of both expansions on 60 mm takes that past 200 degC alone
+    like = changed(("material: CuSn12-C", "material: 42CrMo4+QT"), ("190 degC", "290 degC"), ("60 r6", "60 s6"))
+    assert answer(like, "fit.loosens_at") is None
+    assert number(like, "fit.tight_to") == 200.0
+    assert answer(changed(), "fit.tight_to") is None
+    assert 25.0 < number(changed(), "fit.loosens_at") < 200.0
+
+
+@pytest.mark.parametrize(
+    ("outside", "span"), [(LARGEST_HEATED, range(20, 401, 10)), (LARGEST_CHILLED, range(-205, 21, 5))]
+)
+def test_the_largest_parts_keep_the_films_range(outside: float, span: range) -> None:
+    """Churchill and Chu: up to Ra = 1e12 (the equation as heat transfer textbooks give it)."""
+    most = max(rayleigh_number(surface=t, air=air, diameter=outside) for t in span for air in (0.0, 20.0, 40.0))
+    assert 0.5e12 < most <= 1e12
+
+
+def test_a_shaft_that_is_cold_outside_only_has_no_gain() -> None:
+    """Bi = h (V/A)/k with the poorest conductor: solid 1.5 m stainless, V/A about 0.3 m, h 5 to 10 W/m2K, k 15 W/mK."""
+    ring = Ring(bore=0.0, outside=1500.0, length=1000.0, density=7900.0, specific_heat=460.0, emissivity=DULL)
+    stainless = material("X5CrNi18-10")
+    with pytest.raises(OutOfRange, match=r"the shaft warms from the outside in \(Biot number 0\.[12]"):
+        one_temperature("shaft", "warms", ring, stainless, at=-190.0, room=20.0)

@@ -9,8 +9,9 @@ import pytest
 from setupcheck.jobfile.service import Warmth
 from setupcheck.physics import interference as fits
 from setupcheck.quantities.book import Open
+from setupcheck.quantities.loosening import yields_below
 from setupcheck.quantities.pairing import RZ_PER_RA, Pair
-from setupcheck.quantities.strength import ON_BREAKING, yields_below
+from setupcheck.quantities.strength import ON_BREAKING
 
 from .joint_text import answer, changed, finding, number, reviewed, value
 

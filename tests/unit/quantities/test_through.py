@@ -53,7 +53,7 @@ def test_from_a_tenth_on_the_loss_is_not_known_and_the_heat_is_not_judged() -> N
         assert isinstance(found, Open)
         assert found.because == (
             "the hub cools from the outside in (Biot number 0.1001): one temperature for all of it holds below 0.1 only, so "
-            "the heat it loses is not known"
+            "what it loses or gains on the way is not known"
         )
     judged = finding(outside, "HEAT-001")
     assert "open" == judged.verdict
