@@ -14,7 +14,7 @@ import numpy as np
 from setupcheck.record import record
 from setupcheck.worm.conjugate import Pair, conjugate_gap, first_contact
 from setupcheck.worm.helicoid import Array
-from setupcheck.worm.plunge_gap import Curve, Cut, Insert, check_size, curve, on_cutter
+from setupcheck.worm.plunge_gap import Curve, Cut, Insert, check_size, curve, on_curves, on_cutter
 from setupcheck.worm.wheel_flank import Blank, ends_of_flank
 
 POINTS = 240
@@ -168,11 +168,8 @@ def end_takes_over(gap: Sections, cut: Cut) -> float:
 
 def _in_planes(gap: Sections, rc: Array, v: Array, at: Array) -> Array:
     """Width of each plane's section at cutter radii `at`, (planes, n); NOTHING above the tooth's tip."""
-    widths = np.empty((len(gap.z), len(at)))
-    for i in range(len(gap.z)):
-        widths[i] = curve(rc[::-1, i], v[::-1, i]).at(at)[0]
-        widths[i][at < rc[-1, i]] = NOTHING
-    return widths
+    x, y = np.ascontiguousarray(rc[::-1].T), np.ascontiguousarray(v[::-1].T)
+    return np.where(at < x[:, :1], NOTHING, on_curves(x, y, at))
 
 
 def _middle(gap: Sections, cut: Cut) -> Curve:

@@ -11,7 +11,7 @@ import pytest
 from setupcheck.worm import cutter
 from setupcheck.worm.ease_off import second_order
 from setupcheck.worm.insert import insert_widths
-from setupcheck.worm.plunge_gap import Cut, Insert, cut_gap, measured_insert, on_cutter, revolved
+from setupcheck.worm.plunge_gap import Cut, Insert, curve, cut_gap, measured_insert, on_curves, on_cutter, revolved
 from setupcheck.worm.wheel_flank import Blank, wheel_flank
 
 from . import exact_gap
@@ -252,3 +252,12 @@ def test_a_blank_that_does_not_go_with_the_worm_is_refused(blank: Blank, words: 
 def test_a_blank_that_cannot_be_is_refused(wrong: dict[str, float], words: str) -> None:
     with pytest.raises(ValueError, match=words):
         Blank(**wrong)
+
+
+def test_many_curves_at_once_are_the_curves_one_by_one() -> None:
+    """numpy.gradient stands behind the one by one; beyond its ends every curve is its tangent."""
+    rng = np.random.default_rng(20_240)
+    x, y = np.cumsum(rng.uniform(0.1, 1.0, (7, 40)), axis=1), rng.normal(size=(7, 40))
+    at = np.linspace(-3.0, 40.0, 240)
+    alone = np.array([curve(mine, of).at(at)[0] for mine, of in zip(x, y, strict=True)])
+    assert alone == pytest.approx(on_curves(x, y, at), rel=1e-11, abs=1e-11)
