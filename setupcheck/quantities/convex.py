@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import math
 from collections.abc import Callable
+from itertools import pairwise
 
 CLOSE = 1e-10
 """A search ends this far from the end it looks for. Source: our choice."""
@@ -28,23 +29,42 @@ def convex_span(excess: Callable[[float], float], start: float, *, least: float,
 
 
 def _lowest(excess: Callable[[float], float], least: float, most: float) -> float:
-    """Where a convex function is smallest, or at least not above zero. Source: golden section, a textbook search."""
+    """Where a convex function is smallest, or at least not above zero; anywhere once it is sure to be above zero everywhere.
+
+    Source: golden section, a textbook search; a convex function lies above every chord that is drawn on beyond its ends.
+    """
     golden = (math.sqrt(5.0) - 1.0) / 2.0
     a, b = least, most
     c, d = b - golden * (b - a), a + golden * (b - a)
-    at_c, at_d = excess(c), excess(d)
+    at_a, at_b, at_c, at_d = (excess(x) for x in (a, b, c, d))
     for _ in range(STEPS):
-        if min(at_c, at_d) <= 0.0:
+        if min(at_c, at_d) <= 0.0 or _least_possible((a, at_a), (c, at_c), (d, at_d), (b, at_b)) > 0.0:
             break
         if at_c <= at_d:
-            b, d, at_d = d, c, at_c
+            b, at_b, d, at_d = d, at_d, c, at_c
             c = b - golden * (b - a)
             at_c = excess(c)
         else:
-            a, c, at_c = c, d, at_d
+            a, at_a, c, at_c = c, at_c, d, at_d
             d = a + golden * (b - a)
             at_d = excess(d)
-    return c if at_c <= at_d else d
+    return min(((at_a, a), (at_b, b), (at_c, c), (at_d, d)))[1]
+
+
+def _least_possible(*at: tuple[float, float]) -> float:
+    """What a convex function through four points (x, y), x rising, cannot be below between the outer two; -inf for equal x.
+
+    Between the inner two it is above the outer chords drawn on, on either side of them above the inner chord drawn on.
+    """
+    (a, _), (c, at_c), (d, at_d), (b, _) = at
+    if not a < c < d < b:
+        return -math.inf
+    left, inner, right = ((y - v) / (x - u) for (u, v), (x, y) in pairwise(at))
+    bounds = [at_c + inner * (a - c), at_d + inner * (b - d), at_c, at_d]
+    if left < 0.0 < right:  # the two meet below both
+        x = (at_d - right * d - at_c + left * c) / (left - right)
+        bounds.append(at_c + left * (min(max(x, c), d) - c))
+    return min(bounds)
 
 
 def _end(excess: Callable[[float], float], inside: float, outermost: float) -> float:

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import math
-from collections.abc import Iterator, Mapping
+from collections.abc import Iterator, Mapping, Sequence
 from dataclasses import replace
 
 from setupcheck.errors import JobError
@@ -155,7 +155,8 @@ def _remedy(loaded: LoadedJob, floor: Floor, result: Result, trials: dict[tuple[
         return Remedy(again=again)
     if insert is not None:
         return Remedy(insert=insert)
-    one = _cut_back(loaded, result, most=1)
+    order = _by_weight(result.figure)
+    one = _cut_back(loaded, result, order, most=1)
     if one:
         return Remedy(one)
     swap = next(_swaps(loaded, result, trials), None)
@@ -164,11 +165,11 @@ def _remedy(loaded: LoadedJob, floor: Floor, result: Result, trials: dict[tuple[
     own, figure = _recorded(result, over)
     if own and worst_excess(figure, result.stack.low, result.stack.high) <= 0.0:
         return Remedy(own=own)
-    two = _cut_back(loaded, result, most=2)
+    two = _cut_back(loaded, result, order, most=2)
     if two:
         return Remedy(two)
-    one = _cut_back(loaded, replace(result, figure=figure), most=1)
-    return Remedy(one, own=own) if own and one else Remedy(_cut_back(loaded, result, most=1, bought=True))
+    one = _cut_back(loaded, replace(result, figure=figure), _by_weight(figure), most=1) if own else ()
+    return Remedy(one, own=own) if one else Remedy(_cut_back(loaded, result, order, most=1, bought=True))
 
 
 def _of_the_cut(
@@ -271,14 +272,17 @@ def _recorded(result: Result, over: frozenset[int]) -> tuple[tuple[Change, ...],
     return changes, at(inside)
 
 
-def _cut_back(loaded: LoadedJob, result: Result, *, most: int, bought: bool = False) -> tuple[Change, ...]:
+def _cut_back(
+    loaded: LoadedJob, result: Result, order: Sequence[Cause], *, most: int, bought: bool = False
+) -> tuple[Change, ...]:
     """The biggest causes cut back, at most so many; empty where they cannot bring the stack inside.
 
+    order  the causes, those first that are cut back first: `_by_weight`
     Each but the last is cut back as far as care goes (LEAST_KEPT), the last just as far as is needed.
     """
     stack, figure, over = result.stack, result.figure, finished(loaded.job)
     changes: list[Change] = []
-    for cause in _by_weight(figure):
+    for cause in order:
         entries = [(path, stated(loaded, path, cause)) for path in cause.paths]
         said = entries[0][1] if entries else None
         if said is None or said.now <= 0.0 or cause.mode == "derived" or (cause.op is None and not bought):
