@@ -109,13 +109,17 @@ class Vector:
     signed: bool = False
 
     def _worse(self) -> Account:
-        return max(self.accounts, key=Account.largest)
+        return max(self.accounts, key=Account.largest) if len(self.accounts) > 1 else self.accounts[0]
+
+    def at_its_worst(self) -> tuple[float, list[Push]]:
+        """Base and pushes of the larger account."""
+        return vector_pushes(self._worse(), self.factor)
 
     def base(self) -> float:
-        return vector_pushes(self._worse(), self.factor)[0]
+        return self.at_its_worst()[0]
 
     def pushes(self) -> list[Push]:
-        return vector_pushes(self._worse(), self.factor)[1]
+        return self.at_its_worst()[1]
 
     def undetermined(self) -> tuple[str, ...]:
         return tuple(dict.fromkeys(m for a in self.accounts for m in a.undetermined()))

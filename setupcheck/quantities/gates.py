@@ -11,7 +11,7 @@ from setupcheck.errors import JobError
 from setupcheck.jobfile.models import Deviation
 from setupcheck.ledger.account import Account
 from setupcheck.ledger.causes import TRUNCATION, TRUNCATION_2D, Cause
-from setupcheck.ledger.figures import Figure, Push, Tooth, alternatives
+from setupcheck.ledger.figures import Figure, Push, Tooth, Vector, alternatives
 from setupcheck.ledger.route import Pattern
 from setupcheck.ledger.running import AsItRuns
 from setupcheck.quantities.book import Scope
@@ -98,12 +98,20 @@ class Reach:
 
 def reaches(figure: Figure) -> list[Reach]:
     """All those places."""
-    return [Reach(one.base(), one.pushes()) for one in alternatives(figure)]
+    return [
+        Reach(*one.at_its_worst()) if isinstance(one, Vector) else Reach(one.base(), one.pushes())
+        for one in alternatives(figure)
+    ]
 
 
 def worst_excess(figure: Figure, low: float | None, high: float | None) -> float:
     """How far the worst case goes beyond its limits; negative inside. Source: base and pushes of the figure."""
-    return max(_excesses(reaches(figure), low, high), default=-math.inf)
+    return excess_at(reaches(figure), low, high)
+
+
+def excess_at(places: Sequence[Reach], low: float | None, high: float | None) -> float:
+    """The same of the places a figure is the worst of, where they are known."""
+    return max(_excesses(places, low, high), default=-math.inf)
 
 
 def _excesses(places: Sequence[Reach], low: float | None, high: float | None) -> list[float]:

@@ -10,7 +10,7 @@ from setupcheck.errors import JobError
 from setupcheck.jobfile.reading import LoadedJob
 from setupcheck.jobfile.setups import Setup
 from setupcheck.ledger.causes import Cause
-from setupcheck.ledger.figures import Figure, MidPlane, OverATurn, real_pushes
+from setupcheck.ledger.figures import Figure, Length, MidPlane, OverATurn, Vector, real_pushes
 from setupcheck.quantities.book import Open
 from setupcheck.quantities.cut_again import CutAgain, cut_again
 from setupcheck.quantities.drive import Drive, WheelCut, drive, middle, wheel_cut
@@ -18,6 +18,8 @@ from setupcheck.quantities.entries import Stated, deviation, row_of, stated
 from setupcheck.quantities.finished import finished, op_of
 from setupcheck.quantities.gates import (
     FINE,
+    Reach,
+    excess_at,
     origins,
     reaches,
     reading_for,
@@ -41,6 +43,8 @@ LEAST_KEPT = 0.2
 
 RECORD_BETTER = 3.0
 """How much better than a typical value a device's own record may turn out to be. Source: our screening choice."""
+SAME_WEIGHT = 12
+"""Decimals of a mm to which two causes weigh the same: the noise of sums puts none before the other. Source: our choice."""
 GRIPS_FIRST = ".join.grips_first"
 
 
@@ -282,6 +286,7 @@ def _cut_back(
     """
     stack, figure, over = result.stack, result.figure, finished(loaded.job)
     changes: list[Change] = []
+    places = reaches(figure)
     for cause in order:
         entries = [(path, stated(loaded, path, cause)) for path in cause.paths]
         said = entries[0][1] if entries else None
@@ -289,7 +294,7 @@ def _cut_back(
             continue
         if cause.op in over:
             continue
-        least, largest = span(figure, reaches(figure), cause, said.now, said.guard, low=stack.low, high=stack.high)
+        least, largest = span(figure, places, cause, said.now, said.guard, low=stack.low, high=stack.high)
         if least == 0.0 and largest < said.now and _down(largest, said.unit) > said.least:
             return (*changes, *_changes(loaded, cause, entries, largest / said.now))
         if len(changes) + 1 >= most or cause.mean or LEAST_KEPT * said.now <= said.least:
@@ -298,18 +303,25 @@ def _cut_back(
             continue
         changes += _changes(loaded, cause, entries, LEAST_KEPT)
         figure = scaled(figure, cause, LEAST_KEPT)
+        places = reaches(figure)
     return ()
 
 
 def _by_weight(figure: Figure) -> list[Cause]:
     """The causes behind a figure, those first that take most with them when they go."""
-    full = worst_excess(figure, None, 0.0) if not figure.signed else worst_excess(figure, 0.0, 0.0)
+    low = 0.0 if figure.signed else None
+    places = reaches(figure)
+    full = worst_excess(figure, low, 0.0)
+    hidden = {cause for one in places for p in one.pushes if p.cause.of is not None for cause in p.cause.of.origins()}
+    straight = isinstance(figure, Vector | Length)
 
     def weight(cause: Cause) -> float:
-        gone = scaled(figure, cause, 0.0)
-        return full - (worst_excess(gone, None, 0.0) if not figure.signed else worst_excess(gone, 0.0, 0.0))
+        if straight and not cause.mean and cause not in hidden:  # what it pushes is all that it takes with it
+            gone = [Reach(one.base, [p for p in one.pushes if p.cause != cause]) for one in places]
+            return round(full - excess_at(gone, low, 0.0), SAME_WEIGHT)
+        return round(full - worst_excess(scaled(figure, cause, 0.0), low, 0.0), SAME_WEIGHT)
 
-    return sorted(origins(reaches(figure)), key=weight, reverse=True)
+    return sorted(origins(places), key=weight, reverse=True)
 
 
 def _changes(loaded: LoadedJob, cause: Cause, entries: list[tuple[str, Stated | None]], factor: float) -> list[Change]:
