@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import re
 import unicodedata
 from collections.abc import Iterable, Sequence
 
@@ -25,6 +26,15 @@ class SetupcheckError(Exception):
     ...     print(str(wrong)[:35])
     there is no shipped job 'no such jo
     """
+
+    def wrapped(self, width: int = WIDTH) -> str:
+        """The same for a terminal: lines of at most `width` columns, what goes on indented by two."""
+        return "\n".join(_folded(line, width) for line in str(self).split("\n"))
+
+
+_GLUE = "\u00a0"
+_UNIT = re.compile(r"(?<=\d) (?:N m|um|mm|in|thou|degC|deg|arcsec|K|s|min|MPa|GPa|kN|N|W|kg|l|m|%)(?![\w/])")
+"""A unit that belongs to the number before it; `in` where a word follows is not one, and stays with its number all the same."""
 
 
 @record
@@ -173,8 +183,18 @@ def _folded(text: str, width: int | None) -> str:
         return text
     import textwrap  # few messages need it
 
-    folded = textwrap.wrap(first, width, subsequent_indent="  ", break_long_words=False, break_on_hyphens=False)
-    return "\n".join([*folded, *more])
+    whole = kept_together(first)
+    folded = textwrap.wrap(whole, width, subsequent_indent="  ", break_long_words=False, break_on_hyphens=False)
+    return "\n".join([*(line.replace(_GLUE, " ") for line in folded), *more])
+
+
+def kept_together(text: str) -> str:
+    """A text whose numbers are glued to their units by a space that no line is broken at; put a plain one back afterwards.
+
+    >>> kept_together("from 10 um to 0.5 N m").replace("\u00a0", "_")
+    'from 10_um to 0.5_N_m'
+    """
+    return _UNIT.sub(lambda found: found[0].replace(" ", _GLUE), text)
 
 
 def _shown(problem: Problem, file: str, lines: Sequence[str], width: int | None) -> str:

@@ -132,7 +132,7 @@ def unreadable(path: str, wrong: SetupcheckError) -> Reviewed:
         path,
         UNREADABLE,
         {"file": printable(path), "error": told},
-        wrong.wrapped() if isinstance(wrong, JobError) else str(wrong),
+        wrong.wrapped(),
     )
 
 

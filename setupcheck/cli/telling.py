@@ -4,10 +4,10 @@ from __future__ import annotations
 
 import sys
 
-from setupcheck.errors import JobError, SetupcheckError, printable
+from setupcheck.errors import SetupcheckError, printable
 
 
 def tell(wrong: SetupcheckError) -> None:
     """Prints an error. Whoever raised it has cleaned the words of others in it; this holds where one was forgotten."""
-    text = wrong.wrapped() if isinstance(wrong, JobError) else str(wrong)
+    text = wrong.wrapped()
     print("\n".join(map(printable, text.split("\n"))), file=sys.stderr)

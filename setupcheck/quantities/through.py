@@ -13,8 +13,8 @@ from setupcheck.quantities.shop import Floor
 def biot(floor: Floor, join: Join, pair: Pair, planned: float) -> float | None:
     """How much harder heat gets to the surface of the hub than away from there, in still air [1]: h (V/A) / k.
 
-    h of dull metal at the planned heat.  Raises: OutOfRange as
-    `chilling.one_temperature`.  Source: as there.
+    h of convection and radiation, of dull metal at the planned heat. From 0.1 on the hub is not of one temperature: open.
+    Source: lumped capacity criterion, textbooks; physics.heating; conductivity from materials.yaml or classes.yaml.
     """
     if join.by != "shrink":
         return None

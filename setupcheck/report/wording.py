@@ -6,6 +6,7 @@ import math
 import textwrap
 import unicodedata
 
+from setupcheck.errors import kept_together
 from setupcheck.notation import FACTOR, show
 from setupcheck.quantities.book import INCH, Book, Scope
 from setupcheck.quantities.requirements import spoken
@@ -49,14 +50,15 @@ def finer(unit: str, *, inches: bool) -> tuple[str, int]:
 
 def wrap(text: str, *, first: str = "", rest: str = "") -> list[str]:
     """Lines of at most 80 columns, everything a terminal would obey taken out."""
-    return textwrap.wrap(
-        clean(text),
+    lines = textwrap.wrap(
+        kept_together(clean(text)),
         WIDTH,
         initial_indent=first,
         subsequent_indent=rest,
         break_long_words=False,
         break_on_hyphens=False,
-    ) or [first.rstrip()]
+    )
+    return [line.replace("\u00a0", " ") for line in lines] or [first.rstrip()]
 
 
 def title_of(scope: Scope) -> str:

@@ -100,6 +100,10 @@ class Told(Protocol):
     def told(self) -> str: ...
 
 
+BROKEN = 85
+"""Characters of a docstring's line from which its end may be that of the page and not of what it says. Source: our choice."""
+
+
 def _parts(value: object) -> tuple[object, ...]:
     return value if isinstance(value, tuple) else (value,)
 
@@ -152,8 +156,21 @@ def _stated(book: Book, of: object) -> Iterator[str]:
     of_function = {getattr(q.of, "__name__", ""): name for name, q in reversed(book.quantities.items())}
     text = re.sub(r"\bNone\b", "no answer", (inspect.getdoc(of) or "").partition(">>>")[0])
     text = _NAMED.sub(lambda found: f"`{of_function.get(found[1], found[1])}`", text)
-    for paragraph in filter(None, (line.strip() for line in text.splitlines())):
+    for paragraph in _paragraphs(text):
         yield from wrap(paragraph, first="  ", rest="    ")
+
+
+def _paragraphs(text: str) -> list[str]:
+    """The lines of a docstring; one that was broken for its width alone is put together with the next."""
+    found: list[str] = []
+    broken = False
+    for line in filter(None, map(str.strip, text.splitlines())):
+        if broken:
+            found[-1] += f" {line}"
+        else:
+            found.append(line)
+        broken = len(line) > BROKEN and not line.endswith((".", ":"))
+    return found
 
 
 def _input(loaded: LoadedJob, book: Book, scope: Scope, argument: str, name: str) -> Iterator[str]:

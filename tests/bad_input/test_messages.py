@@ -94,8 +94,8 @@ def test_a_long_text_is_quoted_short() -> None:
 COMMA = """\
     30 |       centre: {on: bore, by: spigot, clearance: [1 um, 3,5 um], runout: 3 um}
        |                                                        ^^^^^^
-  '3,5 um' has a comma between two digits. Write a point for the decimal: 3.5
-  um; or, in a list, a space after the comma: 3, 5 um"""
+  '3,5 um' has a comma between two digits. Write a point for the decimal:
+  3.5 um; or, in a list, a space after the comma: 3, 5 um"""
 
 
 def test_a_terminal_gets_the_message_in_lines_of_eighty_columns_and_the_error_keeps_its_own_text() -> None:

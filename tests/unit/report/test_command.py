@@ -65,7 +65,7 @@ def test_a_job_with_something_missing_exits_1_and_names_the_key(job: Path) -> No
 def test_an_unreadable_job_exits_2_and_says_so_on_the_error_stream(job: Path) -> None:
     found = run("review", str(change(job, "by: spigot", "by: spiggot")))
     assert (2, "") == (found.returncode, found.stdout)
-    assert "Did you mean spigot?" in found.stderr
+    assert "Did you mean spigot?" in " ".join(found.stderr.split())
 
 
 def test_of_several_jobs_the_worst_counts_and_a_bad_one_does_not_stop_the_rest(job: Path) -> None:
@@ -190,7 +190,7 @@ def test_working_of_a_stack_lists_every_cause_with_its_line(job: Path) -> None:
 def test_working_offers_the_nearest_name(job: Path) -> None:
     found = run("working", str(job), "stack.wurst@run-out")
     assert found.returncode == 2
-    assert "Did you mean stack.worst?" in found.stderr
+    assert "Did you mean stack.worst?" in " ".join(found.stderr.split())
 
 
 def test_rules_lists_and_explains() -> None:
@@ -201,7 +201,7 @@ def test_rules_lists_and_explains() -> None:
 def test_an_unknown_rule_is_refused_with_the_nearest() -> None:
     found = run("rules", "STACK-01")
     assert found.returncode == 2
-    assert "STACK-001" in found.stderr
+    assert "STACK-001" in " ".join(found.stderr.split())
 
 
 def test_a_house_limit_is_used_and_printed_with_who_and_why(job: Path, tmp_path: Path) -> None:
