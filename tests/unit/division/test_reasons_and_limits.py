@@ -69,7 +69,7 @@ def test_a_single_pass_hides_a_bend_and_its_bound_lies_on_every_wave(tmp_path: P
     harmonics = [w.harmonic for w in found.waves]
     assert harmonics == [1.0, 2.0, 3.0, 4.0]
     matrix = np.column_stack([np.ones(n), t, *(f(h * theta) for h in harmonics for f in (np.cos, np.sin))])
-    values, square, *_ = np.linalg.lstsq(matrix, y, rcond=None)
+    values = np.linalg.lstsq(matrix, y, rcond=None)[0]
     bend = np.linalg.lstsq(matrix, 4.0 * t * t, rcond=None)[0]
     assert found.drift is not None and found.drift.value / ARCSEC == pytest.approx(values[1])
     nu = found.waves[0].nu
@@ -105,7 +105,9 @@ def test_readings_without_any_scatter_are_those_of_no_instrument(tmp_path: Path)
     assert found.reasons == (reduction.NO_SCATTER,)
     assert all(w.open == reduction.NO_SCATTER for w in found.waves)
     some = plain(
-        tmp_path, degrees, [20.0 * math.cos(math.radians(d)) + e for d, e in zip(degrees, scattered(36, 5, 0.1))]
+        tmp_path,
+        degrees,
+        [20.0 * math.cos(math.radians(d)) + e for d, e in zip(degrees, scattered(36, 5, 0.1), strict=True)],
     )
     assert some.reasons == ()
     assert some.verdict == "told"
