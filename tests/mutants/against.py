@@ -29,6 +29,7 @@ JOINTS = (
 LEDGER = (
     f"{UNIT}/ledger/test_by_hand.py",
     f"{UNIT}/ledger/test_bounds_by_hand.py",
+    f"{UNIT}/ledger/test_figures_by_hand.py",
     f"{UNIT}/ledger/test_draws_and_ends.py",
     f"{UNIT}/ledger/test_small_pieces_by_hand.py",
     f"{UNIT}/ledger/test_gaps.py",
