@@ -349,7 +349,9 @@ def test_a_planned_wave_cause_by_cause(turn: int, side: int) -> None:
         (0.004, -0.006, 0.001, 0.009, -0.002, 0.003, -0.008),
     )
     ring = Pattern(7, 31.0, turn=turn, start=0.4, pressure_angle=ALPHA,
-                   periodic=(Periodic(wave, 8), Periodic(Cause("z", "disc", high=1.0), 2)), shaped=(Shaped(drift, (0.0, 0.1, 0.3, 0.4, 0.6, 0.8, 1.0)),), scatter=(scatter,), rounding=rounding,
+                   periodic=(Periodic(wave, 8), Periodic(Cause("z", "disc", high=1.0), 2)),
+                   shaped=(Shaped(drift, (0.0, 0.1, 0.3, 0.4, 0.6, 0.8, 1.0)),),
+                   scatter=(scatter,), rounding=rounding,
                    outwards=outwards)  # fmt: skip
     figure = Tooth(Account.of(Cause("e", "disc", high=0.01, mean=0.02 + 0j)), ring, flank=True, stepwise=False)
     found = planned_wave(figure, 1, Draws(200), side=side)
