@@ -460,3 +460,14 @@ def test_owners_are_told_apart_by_three_to_one() -> None:
         return Explained(0.5, tuple(Owner(AS_PLANNED, x, (0.0, 0.0)) for x in odds)).told_apart
 
     assert [told(1.0), told(0.75, 0.25), told(0.74, 0.26), told(0.62, 0.2, 0.18)] == [True, True, False, True]
+
+
+@pytest.mark.parametrize("base", [0.5, 2.0, -1.0])
+def test_turning_the_frame_changes_no_end_and_no_angle(base: float) -> None:
+    turn = np.array([[math.cos(base), -math.sin(base)], [math.sin(base), math.cos(base)]])
+    for vector, wide in (([10.0, 0.0], np.diag([4.0, 0.3])), ([3.0, 0.0], np.array([[0.2, 0.3], [0.3, 1.5]]))):
+        plain = length_of(np.array(vector), wide, 7.0)
+        turned = length_of(turn @ vector, turn @ wide @ turn.T, 7.0)
+        assert (turned.low, turned.high) == pytest.approx((plain.low, plain.high), rel=1e-6)
+        assert turned.within == (None if plain.within is None else pytest.approx(plain.within, rel=1e-5))
+        assert turned.direction == pytest.approx((plain.direction + base) % math.tau)

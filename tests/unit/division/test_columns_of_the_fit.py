@@ -377,3 +377,20 @@ def test_a_bend_is_seen_by_its_share_and_its_deviations() -> None:
     assert sigmas == pytest.approx(abs(rest @ data.y) / math.sqrt(rest @ rest * 0.8))
     assert doubts.bend_shows(sums, terms, bend, Scatter(0.0, 20.0, None, 0, None, 0.0)) == (0.0, 0.0)
     assert doubts.bend_shows(sums, [*terms, bend], bend, used)[0] == pytest.approx(0.0, abs=1e-9)
+
+
+@pytest.mark.parametrize(("stations", "told"), [(3, False), (4, True)])
+def test_a_step_is_told_where_two_degrees_of_freedom_are_left(stations: int, told: bool) -> None:
+    """Stations that stray more than their repeats: beside a zero and a step four of them leave two to say how far, three one."""
+    stray, repeat = [0.0, 1.0, -1.0, 0.5], 0.001
+    degrees = [90.0 * j for j in range(stations) for _ in range(2)]
+    y = [stray[j] + (1e3 if j >= stations // 2 else 0.0) + k * repeat for j in range(stations) for k in range(2)]
+    data = points(degrees, y)
+    fit = a_fit(data, Term("zero", 0.0))
+    assert doubts._largest(data, fit, data.t) is not None
+    found = doubts.steps(data, fit)
+    assert {s.along for s in found} == ({"time", "circle"} if told else set())
+    if told:
+        matrix = np.column_stack([np.ones(8), np.arange(8) >= 4])
+        size = np.linalg.lstsq(matrix, np.array(y), rcond=None)[0][1]
+        assert [s.size for s in found] == pytest.approx([size, size])

@@ -16,7 +16,8 @@ from setupcheck.division.eccentric import Wheel, _chance, _looks, _side, apart, 
 from setupcheck.division.fit import Fit, fitted
 from setupcheck.division.points import Points, Prepared, gap_of, prepare, without
 from setupcheck.division.readings import Readings, read_test
-from setupcheck.division.repeatability import repeatability, sighting
+from setupcheck.division.reduction import reduce as reduced
+from setupcheck.division.repeatability import figures, repeatability, sighting
 from setupcheck.division.results import Eccentric, Flanks, Interval, Length, Wave
 from setupcheck.division.stations import closure, means_of, per_mean, places_read, range_of
 from setupcheck.errors import SetupcheckError
@@ -474,3 +475,32 @@ def test_what_is_taken_apart_is_known_as_the_wider_of_its_two() -> None:
     assert found is not None
     assert found.within == pytest.approx(40.0 * stats.t.ppf(0.975, 20) * 3e-6 / (2.0 * math.tan(ALPHA)))
     assert found.tooth == Wheel(30).tooth(found.direction)
+
+
+def test_times_of_less_than_a_minute_are_times(tmp_path: Path) -> None:
+    found = ready(tmp_path, "angle_deg,deviation_arcsec,minutes", "0,0,7", "90,0,7.1", "180,0,7.5")
+    assert found.points.t == pytest.approx([0.0, 0.2, 1.0])
+
+
+def test_the_lowest_of_both_directions_counts_whichever_it_is() -> None:
+    up, down = (np.array([1.0, 9.0]), np.array([2.0, 0.5])), (np.array([5.0, 4.0]), np.array([0.5, 1.0]))
+    found = figures(up, down, 2)
+    assert found.A == 10.0 - (1.0 - 4.0)  # 9 + 1 and 1 - 4, both forward
+    assert (figures(down, up, 2).A, found.up, found.down) == (13.0, (13.0, 8.0, 8.0), (6.0 - 2.0, 4.0, 1.0))
+    assert (found.R, found.E, found.B, found.mean_B, found.M) == (9.0, 8.0, 5.0, 0.5, 3.5)
+
+
+def test_uneven_stations_turned_past_have_the_same_waves_mirrored(tmp_path: Path) -> None:
+    """Sine and cosine of uneven stations are known together: their covariance changes its sign, and no length does."""
+    rng = np.random.default_rng(21)
+    angles = [0.0, 20.0, 35.0, 80.0, 100.0, 170.0, 200.0, 215.0, 300.0]
+    rows = [
+        f"{a},{12.0 * math.cos(math.radians(a)) + rng.normal(0, 1):.6f},{k},forward" for k in range(3) for a in angles
+    ]
+    plain = reduced(written(tmp_path, "angle_deg,deviation_arcsec,run,direction", *rows), count=72).waves[0]
+    turned = reduced(written(tmp_path, "turned_deg,deviation_arcsec,run,direction", *rows), count=72).waves[0]
+    assert abs(plain.covariance[1]) > 0.02 * plain.covariance[0]
+    assert (turned.length.value, turned.length.low, turned.length.high) == pytest.approx(
+        (plain.length.value, plain.length.low, plain.length.high), rel=1e-9
+    )
+    assert turned.length.within == pytest.approx(plain.length.within, rel=1e-9)
