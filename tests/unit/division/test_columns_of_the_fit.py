@@ -317,7 +317,7 @@ def test_the_largest_step_is_the_one_that_takes_most_off_the_squares(seed: int, 
     assert (slip.line, slip.theta) == (row + 2, pytest.approx(data.theta[row]))
 
 
-@pytest.mark.parametrize("scale", [0.9, 1.1])
+@pytest.mark.parametrize("scale", [0.998, 1.002])
 def test_a_step_counts_from_its_chance_on(scale: float) -> None:
     """A step so large that t stands just at its limit, and just below: squares taken over squares left times nu - 1 is t^2."""
     degrees, n = [30.0 * j for j in range(12)] * 3, 36
@@ -327,10 +327,10 @@ def test_a_step_counts_from_its_chance_on(scale: float) -> None:
     matrix = np.column_stack([*(c for t in terms for c in columns(t, points(degrees), ALL)), step])
     noise -= matrix @ np.linalg.lstsq(matrix, noise, rcond=None)[0]  # nothing of the step in it
     rest = step - matrix[:, :3] @ np.linalg.lstsq(matrix[:, :3], step, rcond=None)[0]
-    t = t_at(32.0, 1.0 - 0.005 / 70.0)
+    t = t_at(32.0, 1.0 - 0.005 / 2.0)  # one place alone, looked at both ways
     size = scale * t * math.sqrt(float(noise @ noise) / 32.0 / float(rest @ rest))
     data = points(degrees, noise + size * step)
-    found = doubts._largest(data, a_fit(data, *terms), data.t)
+    found = doubts._largest(data, a_fit(data, *terms), step)
     assert (found is not None) == (scale > 1.0)
 
 

@@ -176,8 +176,8 @@ def test_readings_that_scatter_over_a_tenth_of_a_pitch_are_left_alone(tmp_path: 
         y = [0.0, scatter * pitch, 0.0, pitch, 0.0, 0.0, 0.0]
         return len(ready(tmp_path, "angle_deg,deviation_arcsec", *(f"{50 * j},{d}" for j, d in enumerate(y))).whole)
 
-    assert whole(0.09) == 1
-    assert whole(0.115) == 0
+    assert whole(0.095) == 1
+    assert whole(0.105) == 0
 
 
 # -- both faces ------------------------------------------------------------------------------------------------------
@@ -286,7 +286,7 @@ def test_places_are_whole_pitches_from_the_first() -> None:
     """72 teeth: 5 deg. 0, 5, 10 and 360 are two more and the first again; 7 is none; 0.04 deg are 0.008 of a pitch."""
     assert places_read(points([0, 5, 10, 360, 7, 5.04, 355], [0] * 7), 72) == 4
     assert places_read(points([3, 8, 5], [0] * 3), 72) == 2
-    assert places_read(points([0, 5.06, -5], [0] * 3), 72) == 2
+    assert places_read(points([0, 5.0525, -5], [0] * 3), 72) == 2
 
 
 def test_a_mean_rests_on_the_readings_of_its_station_in_its_direction() -> None:
