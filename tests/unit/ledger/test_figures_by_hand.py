@@ -695,3 +695,27 @@ def test_a_cause_knows_its_name_its_size_and_what_is_left_after_a_turn() -> None
     assert account.largest() == pytest.approx(abs(cause.mean) + 0.2 + 3.0 * 0.01)
     assert account.known() == 0j
     assert cmath.isclose(account.terms[angle][0], 0.3 + 0.1j)
+
+
+@pytest.mark.parametrize("sign", [1.0, -1.0])
+def test_a_middle_that_counts_outwards_takes_the_larger_side_of_each_cause(sign: float) -> None:
+    """Middle 0.01, up by 0.01 at most and down by 0.05: -0.04 .. 0.02, farther below, while the middle stands above."""
+    axial = real(0.01 * sign) + one_sided("up", 0.01) * sign - one_sided("down", 0.05) * sign
+    figure = MidPlane(axial, Account(), Pattern(6, 40.0))
+    assert {p.cause.key: p.up for p in figure.pushes()} == pytest.approx({"up": 0.01, "down": 0.05})
+    below = MidPlane(
+        real(-0.01 * sign) + axial - real(0.01 * sign), Account(), Pattern(6, 40.0)
+    )  # middle on the far side
+    assert {p.cause.key: p.up for p in below.pushes()} == pytest.approx({"up": 0.0, "down": 0.05})
+
+
+def test_holes_on_a_larger_circle_stand_off_with_their_shift() -> None:
+    """Circle 0.01 larger, shifted by 0.003 to 0 deg: hole 1 stands 0.013 out, hole 3 only 0.007."""
+    holes = Pattern(4, 25.0, radial=real(0.01))
+    assert HolePosition(real(0.003), holes, None).base() == pytest.approx(2.0 * 0.013)
+    one = HolePosition(real(0.003), Pattern(3, 25.0, radial=real(0.01)), None)
+    assert one.base() == pytest.approx(2.0 * 0.013)
+    assert HolePosition(real(-0.003), Pattern(3, 25.0, radial=real(0.01)), None).base() == pytest.approx(
+        2.0 * abs(0.01 * cmath.exp(2j * math.pi / 3) - 0.003)
+    )
+    assert float(one.sample(Draws(2))[0]) == pytest.approx(0.026, rel=1e-5)

@@ -511,3 +511,39 @@ def test_flank_factors_by_hand() -> None:
     assert teeth.backlash_swing(0.01, ALPHA) == pytest.approx(0.04 * math.tan(ALPHA))
     lean = teeth.oblique(vector(1e-3 + 2e-3j), ring, lead_angle=0.1, right_hand=False)
     assert value(lean) == near(-1j * math.tan(0.1) * 20.0 * (1e-3 + 2e-3j))
+
+
+def test_what_single_gaps_leave_open_is_named() -> None:
+    lost = Cause("own", "undetermined", missing="path.own")
+    stated = Cause("stated", "length", high=0.1, missing="path.stated")
+    ring = Pattern(
+        5,
+        20.0,
+        scatter=(Scatter(lost, "tangential", 0.1), Scatter(stated, "tangential", 0.1), Scatter(lost, "angle", 0.1)),
+    )
+    assert GapSymmetry((Account(),), 8.0, Account(), Account(), ring).undetermined() == ("path.own",)
+    others = [Account.of(Cause(n, "undetermined", missing=n)) for n in ("a", "b", "c", "d")]
+    figure = GapSymmetry((others[0], others[1]), 8.0, others[2], others[3], Pattern(5, 20.0))
+    assert figure.undetermined() == ("a", "b", "c", "d")
+    assert RunOff(others[0], others[1], 8.0, 0.0, False, ring).undetermined() == ("a", "b")
+
+
+def test_what_pushes_single_gaps_by_hand() -> None:
+    """Half a length of 8: askew by 1e-4 at most is 0.8 um at the ends, twice that; beside by 3 um and 1 um known, twice."""
+    aside = Account.of(Cause("aside", "length", high=0.003)) + real(-0.001)
+    askew = Account.of(Cause("askew", "length", high=1e-4)) + real(2e-4)
+    some = Scatter(
+        Cause("xy", "length", high=0.004), "coordinate", 0.004, around=(0.5, -0.75, 0.0, 0.1, 0.2), outward=(1.0,) * 5
+    )
+    ring = Pattern(5, 20.0, scatter=(some, Scatter(Cause("turn", "length", high=1.0), "angle", 1.0)))
+    figure = GapSymmetry((Account.of(Cause("e", "disc", high=0.01)),), 8.0, aside, askew, ring)
+    assert figure.base() == pytest.approx(2.0 * 0.001 + 2.0 * 8.0 * 2e-4)
+    assert {p.cause.key: (p.down, p.up) for p in figure.pushes()} == {
+        "e": pytest.approx((0.0, 0.02)), "aside": pytest.approx((0.0, 0.006)), "askew": pytest.approx((0.0, 16.0 * 1e-4)),
+        "xy": pytest.approx((0.0, 2.0 * 0.004 * 0.75)),
+    }  # fmt: skip
+    run_off = RunOff(Account.of(Cause("t", "disc", high=1e-4)), askew, 30.0, 0.5, False, ring)
+    assert {p.cause.key: (p.down, p.up) for p in run_off.pushes()} == {
+        "t": pytest.approx((0.0, 30.0 * math.cos(0.5) * 1e-4)), "askew": pytest.approx((0.0, 30.0 * 1e-4))
+    }  # fmt: skip
+    assert not figure.signed and not run_off.signed
