@@ -504,3 +504,13 @@ def test_uneven_stations_turned_past_have_the_same_waves_mirrored(tmp_path: Path
         (plain.length.value, plain.length.low, plain.length.high), rel=1e-9
     )
     assert turned.length.within == pytest.approx(plain.length.within, rel=1e-9)
+
+
+def test_two_wide_stretches_of_seven_are_no_gap_and_of_eight_are_one() -> None:
+    """A quarter of the stations may be wide: seven have one to spare, eight two; the widest of them is told."""
+    seven = [0.0, 10.0, 20.0, 30.0, 130.0, 140.0, 150.0]
+    assert gap_of(points(seven, [0.0] * 7)) is None
+    found = gap_of(points([*seven, 160.0], [0.0] * 8))
+    assert found is not None and np.degrees(found) == pytest.approx([160.0, 0.0, 10.0], abs=1e-6)
+    assert gap_of(points([0.0, 90.0, 180.0], [0.0] * 3)) is None
+    assert gap_of(points([0.0, 50.0, 100.0, 359.9999999999], [0.0] * 4)) is not None

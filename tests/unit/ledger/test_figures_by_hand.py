@@ -719,3 +719,16 @@ def test_holes_on_a_larger_circle_stand_off_with_their_shift() -> None:
         2.0 * abs(0.01 * cmath.exp(2j * math.pi / 3) - 0.003)
     )
     assert float(one.sample(Draws(2))[0]) == pytest.approx(0.026, rel=1e-5)
+
+
+@pytest.mark.parametrize("sign", [1.0, -1.0])
+def test_the_chord_that_is_most_off_takes_steps_and_depths_with_their_own_share(sign: float) -> None:
+    """Five holes on 30 mm: settings step by 9 um, both holes 4 um deeper together, the circle 2 um larger: one sum a chord."""
+    rounding, out = (0.0, sign * 3e-4, 0.0, 0.0, 0.0), (0.001, 0.003, -0.002, 0.0, 0.0)
+    cos, sin = math.cos(math.pi / 5), math.sin(math.pi / 5)
+    steps = [sign * 0.009, -sign * 0.009, 0.0, 0.0, 0.0]  # from each hole to the next
+    both = [0.004, 0.001, -0.002, 0.0, 0.001]
+    wanted = max(abs(2.0 * sin * 0.001 + sin * b + cos * s) for b, s in zip(both, steps, strict=True))
+    ring = Pattern(5, 30.0, rounding=rounding, outwards=out, radial=real(0.001))
+    assert HoleChord(ring).base() == pytest.approx(wanted)
+    assert float(HoleChord(ring).sample(Draws(2))[0]) == pytest.approx(wanted, rel=1e-5)
