@@ -141,6 +141,8 @@ def test_runs_are_numbered_by_those_that_have_readings(tmp_path: Path) -> None:
     found = written(tmp_path, "angle_deg,deviation_arcsec,run\n0,,x\n0,1,z\n1,1,y\n2,1,z\n3,1,\n")
     assert found.runs == ("", "z", "y")
     assert [found.runs[n] for n in found.run] == ["z", "y", "z", ""]
+    first = written(tmp_path, "run,angle_deg,deviation_arcsec\nb,0,1\na,1,1\n")  # wherever its column stands
+    assert (first.runs, list(first.run)) == (("b", "a"), [0, 1])
 
 
 @pytest.mark.parametrize(("most", "told"), [(3, False), (2, True)])
@@ -471,3 +473,11 @@ def test_turning_the_frame_changes_no_end_and_no_angle(base: float) -> None:
         assert (turned.low, turned.high) == pytest.approx((plain.low, plain.high), rel=1e-6)
         assert turned.within == (None if plain.within is None else pytest.approx(plain.within, rel=1e-5))
         assert turned.direction == pytest.approx((plain.direction + base) % math.tau)
+
+
+@pytest.mark.parametrize("value", [0.0, 0.5, 1.9])
+def test_a_wave_shorter_than_its_scatter_across_may_lie_any_way(value: float) -> None:
+    """Its direction is not known then, so the wider of both scatters counts along it too."""
+    found = length_of(np.array([value, 0.0]), np.diag([1.0, 4.0]), 1e9)
+    assert (found.low, found.high) == pytest.approx(_ends(value, 2.0, 2.0), rel=1e-4)
+    assert found.within is None

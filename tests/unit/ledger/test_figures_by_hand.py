@@ -468,6 +468,10 @@ def test_rounded_settings_by_hand() -> None:
     assert figure(False, rounding=rounding, outwards=outwards) == pytest.approx(0.008)
     assert figure(False, 0.4, rounding=rounding, outwards=outwards) == pytest.approx(0.008 + 0.002)
     assert figure(False, 0.4, rounding=rounding) == pytest.approx(0.008)
+    # the other flank where what lies outwards has the other sign
+    assert figure(False, 0.4, rounding=rounding, outwards=(0.0, 0.0, -0.005, 0.0)) == pytest.approx(0.008 + 0.002)
+    assert figure(True, 0.4, rounding=rounding, outwards=(0.0, 0.005, 0.0, 0.0)) == pytest.approx(0.008 + 0.002)
+    assert figure(True, 0.4, rounding=rounding, outwards=(0.0, -0.005, 0.0, 0.0)) == pytest.approx(0.008 + 0.002)
 
 
 @pytest.mark.parametrize("turn", [1, -1])
