@@ -30,6 +30,7 @@ LEDGER = (
     f"{UNIT}/ledger/test_by_hand.py",
     f"{UNIT}/ledger/test_bounds_by_hand.py",
     f"{UNIT}/ledger/test_figures_by_hand.py",
+    f"{UNIT}/ledger/test_draws_by_hand.py",
     f"{UNIT}/ledger/test_route_by_hand.py",
     f"{UNIT}/ledger/test_draws_and_ends.py",
     f"{UNIT}/ledger/test_small_pieces_by_hand.py",
