@@ -183,6 +183,8 @@ def test_stations_a_full_turn_on_are_the_same_where_all_waves_come_round() -> No
     assert list(np.degrees(places(data, whole=False))) == pytest.approx([0.0, 90.0, 360.0, 450.0, 360.0], abs=1e-6)
     assert list(cells(data, whole=False)) == [0, 1, 2, 3, 2]
     assert comes_round([1.0, 72.0]) and not comes_round([1.0, 22.5])
+    # 1e-7 deg are 1.7e-9 rad, less than any instrument reads: one station; 1e-6 deg are another one
+    assert list(cells(points([10.0, 10.0 + 1e-7, 10.0 + 1e-6]), whole=True)) == [0, 0, 1]
 
 
 # -- scatter ---------------------------------------------------------------------------------------------------------

@@ -20,7 +20,6 @@ from setupcheck.ledger.route import Pattern, Scatter
 
 from .small_causes import disc, length, unknown
 
-
 # -- combination -----------------------------------------------------------------------------------------------------
 
 
