@@ -158,6 +158,14 @@ def test_more_runs_than_the_limit_are_refused(
         assert written(tmp_path, text).runs == ("a", "b", "c")
 
 
+def test_a_file_has_at_most_two_hundred_runs(tmp_path: Path) -> None:
+    rows = [f"{j},1,run {j}" for j in range(201)]
+    head = "angle_deg,deviation_arcsec,run\n"
+    assert len(written(tmp_path, head + "\n".join(rows[:200]) + "\n").runs) == 200
+    with pytest.raises(SetupcheckError, match=r":202: more than 200 runs, the last 'run 200'"):
+        written(tmp_path, head + "\n".join(rows) + "\n")
+
+
 def test_limits_of_a_file_are_exact(tmp_path: Path, monkeypatch: pytest.MonkeyPatch) -> None:
     monkeypatch.setattr(readings, "MOST_ROWS", 2)
     assert len(written(tmp_path, "angle_deg,deviation_arcsec\n0,1\n1,1\n2,\n")) == 2

@@ -72,6 +72,11 @@ def test_a_wave_is_taken_for_another_from_a_tenth_on(gain: float, left: float, n
     made = sums((ZERO, ONE, TWO), {(0, 3): zero, (1, 3): gain})
     assert design._taken_for(made, [ZERO, ONE], TWO) == named
     assert design._taken_for(made, [ONE, ZERO], TWO) == named
+    scale = np.array(
+        [1.0, 1.0, 1.0, 3.0, 3.0, 1.0]
+    )  # columns three times as long: so is what is taken up, and no share
+    longer = Sums(made.terms, made.products * np.outer(scale, scale), 10)
+    assert design._taken_for(longer, [ZERO, ONE], TWO) == (() if left > 0.1 else (1.0,))
 
 
 # -- scatter, steps, what follows --------------------------------------------------------------------------------------

@@ -249,7 +249,8 @@ def test_readings_of_a_circle_scatter_about_the_zero_of_their_run(tmp_path: Path
         for k, zero in enumerate(zeros):
             e = scattered(24, 30 + k, 1.0 / 3600.0)
             for i, j in enumerate([*range(12), *range(11, -1, -1)]):
-                shown = (30.0 * j + zero + e[i]) % 360.0
+                wave = 60.0 / 3600.0 * math.cos(math.radians(30.0 * j))  # many times what readings scatter by
+                shown = (30.0 * j + zero + e[i] + wave) % 360.0
                 rows.append(f"{30 * j},{shown:.9f},{k},{'forward' if i < 12 else 'reverse'}")
         return reduce(written(tmp_path, "angle_deg,reading_deg,run,direction", *rows), count=72)
 

@@ -494,6 +494,11 @@ def test_a_middle_that_counts_outwards_takes_the_larger_side_of_each_cause(sign:
     axial = real(0.01 * sign) + one_sided("up", 0.01) * sign - one_sided("down", 0.05) * sign
     figure = MidPlane(axial, Account(), Pattern(6, 40.0))
     assert {p.cause.key: p.up for p in figure.pushes()} == pytest.approx({"up": 0.01, "down": 0.05})
+    # up by 0.05 and down by 0.03: -0.02 .. 0.06, farther on the middle's own side, where the one downwards adds nothing
+    above = MidPlane(
+        real(0.01 * sign) + one_sided("up", 0.05) * sign - one_sided("down", 0.03) * sign, Account(), Pattern(6, 40.0)
+    )
+    assert {p.cause.key: p.up for p in above.pushes()} == pytest.approx({"up": 0.05, "down": 0.0})
     below = MidPlane(
         real(-0.01 * sign) + axial - real(0.01 * sign), Account(), Pattern(6, 40.0)
     )  # middle on the far side
