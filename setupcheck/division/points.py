@@ -101,10 +101,8 @@ def _stations(readings: Readings, *, count: int, start: float, turn: int) -> Rea
 
 
 def _times(readings: Readings) -> Reals:
-    """0 to 1. Rows without a time follow each other evenly."""
-    told = readings.minutes if readings.minutes is not None else np.arange(len(readings), dtype=float)
-    span = float(told.max() - told.min())
-    return np.asarray((told - told.min()) / span) if span > 0.0 else np.zeros(len(told))
+    """Minutes, or numbers of the rows where none are told: those follow each other evenly. `_tidied` makes 0 to 1 of them."""
+    return readings.minutes if readings.minutes is not None else np.arange(len(readings), dtype=float)
 
 
 def _deviations(readings: Readings, theta: Reals) -> tuple[Reals, bool]:

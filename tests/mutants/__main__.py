@@ -66,7 +66,7 @@ def main(words: Sequence[str] | None = None) -> int:
     parser.add_argument("--sample", type=int, default=SAMPLE)
     parser.add_argument("--seed", type=int, default=SEED)
     parser.add_argument("--minutes", type=float, default=60.0, help="draw no further mutant after so many minutes")
-    parser.add_argument("--budget", type=float, default=4.0, help="processor seconds of tests for one mutant")
+    parser.add_argument("--budget", type=float, default=8.0, help="processor seconds of tests for one mutant")
     parser.add_argument("--only", default="", help="NUMBER,… of one module, as printed")
     asked = parser.parse_args(words)
     running.preload()

@@ -6,7 +6,7 @@ from pathlib import Path
 
 from tests.mutants.running import ROOT
 
-UNIT, PUBLISHED = "tests/unit", "tests/published"
+UNIT, PUBLISHED, JOBS = "tests/unit", "tests/published", "tests/jobs"
 JOINTS = (
     f"{UNIT}/quantities/test_joint_strength.py",
     f"{UNIT}/quantities/test_joint_sections.py",
@@ -16,11 +16,22 @@ JOINTS = (
     f"{UNIT}/quantities/test_joint_missing.py",
     f"{UNIT}/quantities/test_choosing.py",
     f"{UNIT}/quantities/test_joint_states.py",
+    f"{UNIT}/quantities/test_joint_heat.py",
+    f"{UNIT}/quantities/test_friction.py",
+    f"{UNIT}/quantities/test_cold.py",
+    f"{UNIT}/quantities/test_heat_checks.py",
+    f"{UNIT}/quantities/test_material_classes.py",
+    f"{UNIT}/quantities/test_stuff.py",
+    f"{UNIT}/quantities/test_beyond_range.py",
     f"{PUBLISHED}/test_joints_through_job_files.py",
+    f"{JOBS}/test_slips_of_fits.py",
 )
 LEDGER = (
     f"{UNIT}/ledger/test_by_hand.py",
     f"{UNIT}/ledger/test_bounds_by_hand.py",
+    f"{UNIT}/ledger/test_figures_by_hand.py",
+    f"{UNIT}/ledger/test_draws_by_hand.py",
+    f"{UNIT}/ledger/test_route_by_hand.py",
     f"{UNIT}/ledger/test_draws_and_ends.py",
     f"{UNIT}/ledger/test_small_pieces_by_hand.py",
     f"{UNIT}/ledger/test_gaps.py",
@@ -32,6 +43,15 @@ LEDGER = (
     f"{PUBLISHED}/test_folded_harmonics.py",
     f"{UNIT}/ledger/test_laws_of_a_swing.py",
     f"{UNIT}/ledger/test_laws_of_the_route.py",
+    f"{UNIT}/ledger/test_extreme_values.py",
+    f"{UNIT}/worm/test_backlash_chain.py",
+    f"{UNIT}/worm/test_mid_plane_of_a_tilted_head.py",
+    f"{UNIT}/division/test_against_the_ledger.py",
+    f"{UNIT}/report/pictures/test_high_spots.py",
+    f"{PUBLISHED}/test_npl_dem_es_011.py",
+    f"{JOBS}/test_measured_over_balls.py",
+    f"{JOBS}/test_trued_and_in_place.py",
+    f"{JOBS}/test_index_as_it_runs.py",
 )
 DIVISION = (
     f"{UNIT}/division/test_by_hand.py",
@@ -43,18 +63,28 @@ DIVISION = (
     f"{PUBLISHED}/test_sighting_instruments.py",
     f"{PUBLISHED}/test_pitch_measurement.py",
     f"{PUBLISHED}/test_division_test.py",
+    f"{PUBLISHED}/test_planted_divisions.py",
+    "tests/bad_input/test_division_readings.py",
+    f"{JOBS}/test_division_readings.py",
+    f"{JOBS}/test_ways_of_dividing.py",
+    f"{JOBS}/test_division_test_against_the_plan.py",
 )
 TESTS: dict[str, tuple[str, ...]] = {
     "setupcheck.physics.interference": (
         f"{UNIT}/physics/test_joints_by_hand.py",
         f"{UNIT}/physics/test_interference.py",
         f"{UNIT}/physics/test_laws_of_a_joint.py",
+        f"{UNIT}/physics/test_ends_of_a_joint.py",
         f"{PUBLISHED}/test_interference_examples.py",
+        f"{PUBLISHED}/test_two_rings_by_differences.py",
     ),
     "setupcheck.physics.heating": (
         f"{UNIT}/physics/test_heating_of_joints.py",
         f"{PUBLISHED}/test_heating.py",
         f"{PUBLISHED}/test_cooling_by_integration.py",
+        f"{PUBLISHED}/test_heat_beside_a_hub.py",
+        f"{UNIT}/quantities/test_joint_heat.py",
+        f"{UNIT}/quantities/test_heat_plan.py",
     ),
     "setupcheck.quantities.pairing": JOINTS,
     "setupcheck.quantities.strength": JOINTS,

@@ -33,9 +33,8 @@ def test_a_file_that_is_there_stays_unless_it_is_forced(job: Path) -> None:
     (job.parent / "sheet.html").write_text("mine")
     run = command("sheet", "job.yaml", "-o", "sheet.html", at=job.parent)
     assert 2 == run.returncode
-    assert "sheet.html is already there and stays as it is. Write another name, or --force to replace it" in " ".join(
-        run.stderr.split()
-    )
+    told = " ".join(run.stderr.split())
+    assert "sheet.html is already there and stays as it is. Write another name, or --force to replace it" in told
     assert "mine" == (job.parent / "sheet.html").read_text()
     assert 0 == command("sheet", "job.yaml", "-o", "sheet.html", "--force", at=job.parent).returncode
     assert (job.parent / "sheet.html").read_text().startswith("<!DOCTYPE html>")

@@ -12,6 +12,7 @@ from scipy import optimize
 from scipy.integrate import solve_ivp  # type: ignore[import-untyped, unused-ignore]
 
 from setupcheck.physics.heating import (
+    AIR_CONDUCTIVITY,
     BRIGHT,
     DULL,
     LUMPED_BELOW,
@@ -214,3 +215,8 @@ def test_below_the_least_biot_number_a_plate_is_of_one_temperature_to_some_five_
     """Slowest mode of a plate that cools on both sides: cos(z x/L) with z tan z = Bi, so its face is cos z of its middle."""
     z = optimize.brentq(lambda z: z * math.tan(z) - LUMPED_BELOW, 1e-6, 1.5)
     assert 0.045 < 1.0 - math.cos(z) < 0.05
+
+
+def test_warm_air_conducts_as_its_power_law_says() -> None:
+    """0.0241 W/mK at 0 degC, growing with T^0.81 (tables of air and their usual fit, from memory): 0.0297 at 80 degC."""
+    assert AIR_CONDUCTIVITY == pytest.approx(0.0241 * ((273.15 + 80.0) / 273.15) ** 0.81, rel=0.02)

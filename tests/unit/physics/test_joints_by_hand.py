@@ -149,3 +149,17 @@ def test_small_joints_and_bright_surfaces_are_joints_too() -> None:
     )
     assert fits.smoothing_loss(hub_roughness=0.0, shaft_roughness=0.0) == 0.0
     assert fits.hub_pressure_limit(SOLID, strength=0.5, safety=1.0) == pytest.approx(0.375 / math.sqrt(3.0))
+
+
+def test_where_both_parts_are_alike_weak_the_hub_is_named() -> None:
+    """Hub and hollow shaft of the same strength and the same ratio of 1/2: both end at 300 x 0.75 / sqrt 3."""
+    soft = {"hub_safety": 1.0, "shaft_safety": 1.0}
+    given = {"strength": 300.0, "safety": 1.0}
+    assert fits.hub_pressure_limit(HOLLOW, **given) == fits.shaft_pressure_limit(HOLLOW, **given)
+    alike = fits.elastic_limit(HOLLOW, hub_strength=300.0, shaft_yield=300.0, hub_brittle=False, **soft)
+    assert alike.weaker == "hub"
+    brittle = fits.hub_pressure_limit(HOLLOW, brittle=True, **given)  # 300 x 0.75 / 1.25 = 180
+    even = fits.elastic_limit(
+        HOLLOW, hub_strength=300.0, shaft_yield=brittle * math.sqrt(3.0) / 0.75, hub_brittle=True, **soft
+    )
+    assert even.pressure == pytest.approx(180.0)

@@ -8,10 +8,20 @@ import pytest
 
 from setupcheck.jobfile.service import Warmth
 from setupcheck.physics import interference as fits
-from setupcheck.quantities.book import Open
-from setupcheck.quantities.loosening import yields_below
+from setupcheck.quantities.book import Open, OutOfRange
+from setupcheck.quantities.friction import Friction
+from setupcheck.quantities.loosening import _finite, yields_below
 from setupcheck.quantities.pairing import RZ_PER_RA, Pair
-from setupcheck.quantities.strength import ON_BREAKING
+from setupcheck.quantities.strength import (
+    ON_BREAKING,
+    STRENGTH,
+    force_held,
+    friction_in_words,
+    friction_low,
+    length_ratio,
+    slip_safety,
+    torque_held,
+)
 
 from .joint_text import answer, changed, finding, number, reviewed, value
 
@@ -188,3 +198,29 @@ def test_a_pair_at_its_elastic_limit_already_has_no_colder_temperature_to_name()
 def test_the_other_criteria_allow_less_of_a_ductile_joint_by_tresca_than_by_von_mises() -> None:
     """Tresca's hexagon lies within von Mises' ellipse (any text on strength), so it yields first."""
     assert 0.0 < number(changed(), "fit.elastic_tresca") <= number(changed(), "fit.elastic_mises")
+
+
+def test_a_unit_is_shown_to_the_same_decimals_in_every_figure_of_a_joint() -> None:
+    """Tenths of a micrometre, a MPa and a newton metre; whole degrees; two decimals of kilonewtons and plain numbers."""
+    wanted = {"": 0, "um": 1, "MPa": 1, "N*m": 1, "degC": 0, "kN": 2, "1": 2}
+    assert {(q.name, q.digits) for q in STRENGTH} == {(q.name, wanted[q.unit]) for q in STRENGTH}
+
+
+def test_small_answers_of_a_joint_by_hand() -> None:
+    assert friction_in_words(Friction(0.12, 0.2, "from memory", "dry")) == "0.12 to 0.2 (from memory; dry)"
+    assert friction_in_words(Friction(0.12, 0.2, "shop record")) == "0.12 to 0.2 (shop record)"
+    assert friction_low(Friction(0.12, 0.2, "shop record")) == 0.12
+    pair = value(changed(), "fit.pair")
+    assert isinstance(pair, Pair)
+    assert length_ratio(pair) == pytest.approx(30.0 / 60.0)
+    assert (_finite(math.inf), _finite(20.0), _finite(55.5)) == (None, 20.0, 55.5)
+    with pytest.raises(OutOfRange, match="does not hold even at 20 degC"):
+        _finite(19.999)
+    assert torque_held(pair, 100.0) == pytest.approx(100.0 * 30.0)
+    assert slip_safety(100.0, 60.0) == pytest.approx(2.0)  # the slip factor of 1.2 put back
+    assert slip_safety(100.0, 0.0) is None
+    assert fits.LOWER_SMOOTHING_FACTOR == fits.SMOOTHING_FACTOR / 2.0 == 0.4  # as the comment beside them has it
+    # grips below nothing hold nothing, and pressure is straight in the grip
+    assert force_held(pair, -0.01, 0.1) == 0.0
+    assert force_held(pair, 0.04, 0.1) == pytest.approx(2.0 * force_held(pair, 0.02, 0.1))
+    assert force_held(pair, 0.02, 0.2) == pytest.approx(2.0 * force_held(pair, 0.02, 0.1))
