@@ -8,11 +8,12 @@ from setupcheck.jobfile.setups import Join
 from setupcheck.physics.carrying import Body, opened, time_open
 from setupcheck.physics.heating import BRIGHT, DULL, REFERENCE_TEMPERATURE, joining_play
 from setupcheck.quantities.book import Open, Quantity
-from setupcheck.quantities.chilling import contraction, out_of_the_cold, seat_of
+from setupcheck.quantities.chilling import contraction, one_temperature, out_of_the_cold, seat_of
 from setupcheck.quantities.joining import JointSizes
 from setupcheck.quantities.joint_heat import ring_of, unheated
 from setupcheck.quantities.pairing import Pair
 from setupcheck.quantities.shop import Floor
+from setupcheck.quantities.stuff import material_of
 from setupcheck.record import record
 
 SPARE = 20.0
@@ -78,12 +79,15 @@ def way(
 ) -> Way | Open:
     """The bodies of a joint on their way. planned: least heat of the source [degC], None where nothing heats the hub.
 
-    eps  emissivity;  expansion  of the hub [1/K].  Source: lumped capacity, physics.carrying.
+    eps  emissivity;  expansion  of the hub [1/K].
+    Raises: OutOfRange for a hub or a shaft that is not of one temperature throughout.
+    Source: lumped capacity, physics.carrying.
     """
     room, heat = floor.loaded.job.room, join.heat
-    hub = Body(ring=ring_of(pair, eps), start=planned, expansion=expansion) if planned is not None else None
-    if hub is None:
-        hub = Body(ring=None, start=unheated(join, room), expansion=expansion)
+    hub = Body(ring=None, start=unheated(join, room), expansion=expansion)
+    if planned is not None:
+        hub = Body(ring=ring_of(pair, eps), start=planned, expansion=expansion)
+        one_temperature("hub", "cools", ring_of(pair), pair.hub, at=planned, room=room)
     shrinks = contraction(floor, join, shaft_at)
     shaft = Body(ring=None, start=shaft_at, expansion=shrinks)
     if heat is not None and heat.chills(room):
@@ -92,6 +96,8 @@ def way(
             return start
         if isinstance(seat, Open):
             return seat
+        if seat is not None:
+            one_temperature("shaft", "warms", seat, material_of(floor, pair.shaft_part), at=start[0], room=room)
         shaft = Body(ring=seat, start=start[0], expansion=shrinks)
     return Way(hub, shaft, pair.diameter, room)
 
@@ -122,14 +128,7 @@ def _lasts(
 
 
 def carry_allowed(
-    floor: Floor,
-    join: Join,
-    pair: Pair,
-    needed: float,
-    shaft_at: float,
-    op: int,
-    planned: float | None,
-    biot: float | None = None,
+    floor: Floor, join: Join, pair: Pair, needed: float, shaft_at: float, op: int, planned: float | None
 ) -> float | Open | None:
     """Time in still air until hub and shaft just keep the wanted play [s], dull metal; None where it is never reached.
 
@@ -139,56 +138,28 @@ def carry_allowed(
 
 
 def carry_allowed_bright(
-    floor: Floor,
-    join: Join,
-    pair: Pair,
-    needed: float,
-    shaft_at: float,
-    op: int,
-    planned: float | None,
-    biot: float | None = None,
+    floor: Floor, join: Join, pair: Pair, needed: float, shaft_at: float, op: int, planned: float | None
 ) -> float | Open | None:
     """As `carry_allowed`, of bright metal, which keeps its heat longer [s]. Source: physics.carrying."""
     return _lasts(floor, join, pair, needed, shaft_at, op, planned, eps=BRIGHT)
 
 
 def carry_with_spare(
-    floor: Floor,
-    join: Join,
-    pair: Pair,
-    needed: float,
-    shaft_at: float,
-    op: int,
-    planned: float | None,
-    biot: float | None = None,
+    floor: Floor, join: Join, pair: Pair, needed: float, shaft_at: float, op: int, planned: float | None
 ) -> float | Open | None:
     """Time in still air that leaves what HEAT-003 asks above the need [s], dull metal. Source: physics.carrying."""
     return _lasts(floor, join, pair, needed, shaft_at, op, planned, eps=DULL, spare=SPARE)
 
 
 def carry_until_bite(
-    floor: Floor,
-    join: Join,
-    pair: Pair,
-    needed: float,
-    shaft_at: float,
-    op: int,
-    planned: float | None,
-    biot: float | None = None,
+    floor: Floor, join: Join, pair: Pair, needed: float, shaft_at: float, op: int, planned: float | None
 ) -> float | Open | None:
     """Time in still air until the tightest pair has no play left [s], dull metal. Source: physics.carrying."""
     return _lasts(floor, join, pair, needed, shaft_at, op, planned, eps=DULL, until_bite=True)
 
 
 def carry_until_bite_bright(
-    floor: Floor,
-    join: Join,
-    pair: Pair,
-    needed: float,
-    shaft_at: float,
-    op: int,
-    planned: float | None,
-    biot: float | None = None,
+    floor: Floor, join: Join, pair: Pair, needed: float, shaft_at: float, op: int, planned: float | None
 ) -> float | Open | None:
     """As `carry_until_bite`, of bright metal [s]. Source: physics.carrying."""
     return _lasts(floor, join, pair, needed, shaft_at, op, planned, eps=BRIGHT, until_bite=True)
@@ -197,16 +168,8 @@ def carry_until_bite_bright(
 _HERE = {"floor": "route.floor", "join": ":"}
 _NEEDED = {"needed": "heat.needed"}
 _SHAFT = {"shaft_at": "heat.shaft_at"}
-_WAY = {
-    **_HERE,
-    "pair": "fit.pair",
-    **_NEEDED,
-    **_SHAFT,
-    "op": "@op",
-    "planned": "heat.planned_low",
-    "biot": "heat.biot",  # whether the hub is of one temperature throughout; `shaft_at` asks the same of the shaft
-}
-_COLD_ALONE = {"planned": None, "biot": None}
+_WAY = {**_HERE, "pair": "fit.pair", **_NEEDED, **_SHAFT, "op": "@op", "planned": "heat.planned_low"}
+_COLD_ALONE = {"planned": None}
 
 OPENING = (
     Quantity(

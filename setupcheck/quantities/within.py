@@ -86,28 +86,9 @@ WITHIN = (
     ),
     *(
         Quantity(
-            name + ELASTIC,
-            "join",
-            "um",
-            1,
-            tight,
-            {"grip": name, **_TIGHT},
-            f"{says}, where it stays elastic",
-            _UNKNOWN,
+            name + ELASTIC, "join", "um", 1, of, {"grip": name, **inputs}, f"{says}, where it stays elastic", _UNKNOWN
         )
-        for name, says in _GRIPS.items()
-    ),
-    *(
-        Quantity(
-            name + ELASTIC,
-            "join",
-            "um",
-            1,
-            loose,
-            {"grip": name, **_LOOSE},
-            f"{says}, where it stays elastic",
-            _UNKNOWN,
-        )
-        for name, says in _LOOSEST.items()
+        for of, inputs, grips in ((tight, _TIGHT, _GRIPS), (loose, _LOOSE, _LOOSEST))
+        for name, says in grips.items()
     ),
 )

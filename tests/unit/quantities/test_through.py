@@ -48,7 +48,7 @@ def test_from_a_tenth_on_the_loss_is_not_known_and_the_heat_is_not_judged() -> N
     assert number(inside, "heat.biot") < LUMPED_BELOW
     assert number(inside, "heat.carry_loss") == pytest.approx(number(changed(), "heat.carry_loss"))
     assert "pass" == finding(inside, "HEAT-001").verdict
-    for name in ("heat.biot", "heat.carry_loss", "heat.at_shaft"):
+    for name in ("heat.biot", "heat.carry_loss", "heat.carry_loss_bright", "heat.at_shaft", "heat.carry_allowed"):
         found = answer(outside, name)
         assert isinstance(found, Open)
         assert found.because == (
