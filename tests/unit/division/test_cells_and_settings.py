@@ -489,3 +489,10 @@ def test_a_wave_shorter_than_its_scatter_across_may_lie_any_way(value: float) ->
     found = length_of(np.array([value, 0.0]), np.diag([1.0, 4.0]), 1e9)
     assert (found.low, found.high) == pytest.approx(_ends(value, 2.0, 2.0), rel=1e-4)
     assert found.within is None
+
+
+def test_blocks_longer_than_the_bar_stand_it_upright() -> None:
+    """A step of 1.2 bars: 45 deg asks for 0.71 of a bar, the nearest sum is 1.2, and no bar goes beyond 90 deg."""
+    quarter, away, blocks, left = tables.sine_setting(Fraction(1, 8), 1.0, 1.2)
+    assert (quarter, away, blocks) == (0, Fraction(1, 8), pytest.approx(1.2))
+    assert left == pytest.approx(math.pi / 4.0)

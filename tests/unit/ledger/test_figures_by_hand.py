@@ -528,3 +528,10 @@ def test_the_chord_that_is_most_off_takes_steps_and_depths_with_their_own_share(
     ring = Pattern(5, 30.0, rounding=rounding, outwards=out, radial=real(0.001))
     assert HoleChord(ring).base() == pytest.approx(wanted)
     assert float(HoleChord(ring).sample(Draws(2))[0]) == pytest.approx(wanted, rel=1e-5)
+
+
+def test_gaps_of_no_known_depth_have_no_base_but_their_offset() -> None:
+    assert ToothRunOut(disc("e", 0.01), Pattern(4, 20.0), 1.5).base() == 0.0
+    assert ToothRunOut(real(0.002), Pattern(4, 20.0), 1.5).base() == pytest.approx(1.5 * 2.0 * 0.002)
+    assert PitchCircle(Pattern(4, 20.0)).base() == 0.0
+    assert HoleChord(Pattern(4, 20.0)).base() == 0.0

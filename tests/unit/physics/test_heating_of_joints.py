@@ -220,3 +220,21 @@ def test_below_the_least_biot_number_a_plate_is_of_one_temperature_to_some_five_
 def test_warm_air_conducts_as_its_power_law_says() -> None:
     """0.0241 W/mK at 0 degC, growing with T^0.81 (tables of air and their usual fit, from memory): 0.0297 at 80 degC."""
     assert AIR_CONDUCTIVITY == pytest.approx(0.0241 * ((273.15 + 80.0) / 273.15) ** 0.81, rel=0.02)
+
+
+@pytest.mark.parametrize("field", ["density", "specific_heat", "length", "bore", "outside"])
+def test_a_ring_of_nothing_is_refused(field: str) -> None:
+    kept = {
+        "bore": 50.0,
+        "outside": 100.0,
+        "length": 30.0,
+        "density": 8000.0,
+        "specific_heat": 400.0,
+        "emissivity": DULL,
+    }
+    Ring(**kept)  # type: ignore[arg-type]
+    for value in (0.0, -1.0, math.nan):
+        if field == "bore" and value == 0.0:
+            continue
+        with pytest.raises(ValueError):
+            Ring(**{**kept, field: value})  # type: ignore[arg-type]
