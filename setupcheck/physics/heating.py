@@ -255,7 +255,7 @@ def rayleigh_number(*, surface: float, air: float, diameter: float) -> float:
     """How hard warm air rises along a cylinder [1], as `film_coefficient` has it; degC, mm. Source: as there.
 
     >>> f"{rayleigh_number(surface=165, air=23, diameter=100):.1e}"
-    '4.8e+06'
+    '5.5e+06'
     """
     return _air(surface, air, diameter)[2]
 

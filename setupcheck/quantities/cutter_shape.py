@@ -122,7 +122,7 @@ def half_face(shape: Shape) -> float | Open:
     if d.face_width > d.pitch_diameter:
         raise OutOfRange(
             f"teeth {d.face_width:g} mm wide on a worm of {d.pitch_diameter:g} mm: closed forms hold near the mid-plane and not "
-            f"at their ends. Write contact: exact (mesh)"
+            f"at the ends of so wide a face"
         )
     return d.face_width / 2.0
 
