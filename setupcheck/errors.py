@@ -34,7 +34,7 @@ class SetupcheckError(Exception):
 
 _GLUE = "\u00a0"
 _UNIT = re.compile(r"(?<=\d) (?:N m|um|mm|in|thou|degC|deg|arcsec|K|s|min|MPa|GPa|kN|N|W|kg|l|m|%)(?![\w/])")
-"""A unit that belongs to the number before it; `in` where a word follows is not one, and stays with its number all the same."""
+"""A unit that belongs to the number before it. `in` may be a word, and then stays with its number all the same."""
 
 
 @record
@@ -181,20 +181,22 @@ def _folded(text: str, width: int | None) -> str:
     first, *more = text.split("\n")
     if width is None or len(first) <= width:
         return text
+    return "\n".join([*in_lines(first, width, rest="  "), *more])
+
+
+def in_lines(text: str, width: int, *, first: str = "", rest: str = "") -> list[str]:
+    """A text in lines of at most `width` columns, broken at spaces alone and never between a number and its unit.
+
+    >>> in_lines("A hole of 8.5 mm", 14)
+    ['A hole of', '8.5 mm']
+    """
     import textwrap  # few messages need it
 
-    whole = kept_together(first)
-    folded = textwrap.wrap(whole, width, subsequent_indent="  ", break_long_words=False, break_on_hyphens=False)
-    return "\n".join([*(line.replace(_GLUE, " ") for line in folded), *more])
-
-
-def kept_together(text: str) -> str:
-    """A text whose numbers are glued to their units by a space that no line is broken at; put a plain one back afterwards.
-
-    >>> kept_together("from 10 um to 0.5 N m").replace("\u00a0", "_")
-    'from 10_um to 0.5_N_m'
-    """
-    return _UNIT.sub(lambda found: found[0].replace(" ", _GLUE), text)
+    whole = _UNIT.sub(lambda found: found[0].replace(" ", _GLUE), text)
+    lines = textwrap.wrap(
+        whole, width, initial_indent=first, subsequent_indent=rest, break_long_words=False, break_on_hyphens=False
+    )
+    return [line.replace(_GLUE, " ") for line in lines]
 
 
 def _shown(problem: Problem, file: str, lines: Sequence[str], width: int | None) -> str:

@@ -5,26 +5,13 @@ from __future__ import annotations
 from setupcheck.jobfile.heating import Heat
 from setupcheck.jobfile.models import Round
 from setupcheck.jobfile.setups import Join
-from setupcheck.notation import fixed
-from setupcheck.physics.heating import (
-    DULL,
-    LARGEST_CHILLED,
-    LUMPED_BELOW,
-    Ring,
-    biot_number,
-    cooled_temperature,
-    heat_loss,
-)
-from setupcheck.physics.materials import Material, expansion_for
+from setupcheck.physics.heating import DULL, LARGEST_CHILLED, Ring, cooled_temperature
+from setupcheck.physics.materials import expansion_for
 from setupcheck.quantities.book import Known, Open, OutOfRange, Quantity, in_range
-from setupcheck.quantities.material_classes import usual_for
 from setupcheck.quantities.shop import Floor
 from setupcheck.quantities.stuff import material_of
+from setupcheck.quantities.through import one_temperature
 from setupcheck.quantities.typical import typical
-
-BIOT_DIGITS = 4
-_LEAST_APART = 1.0
-"""Kelvin between part and room that the film is taken at where there are less. Source: our screening choice."""
 
 
 def cold_error(heat: Heat) -> tuple[float, str] | None:
@@ -78,27 +65,6 @@ def seat_of(floor: Floor, join: Join, emissivity: float) -> Ring | Open | None:
             specific_heat=found.specific_heat.value,
             emissivity=emissivity,
         )
-
-
-def one_temperature(which: str, turns: str, ring: Ring, of: Material | Open, *, at: float, room: float) -> float:
-    """Biot number of a part in still air [1]: h (V/A) / k, h of convection and radiation.
-
-    which, turns  for the message: `hub`, `cools`;  at  the part as it comes out of oven or cold [degC]
-    k: as stated or listed; of an unlisted material that does not state it, the least that its class, or any metal, has.
-    Raises: OutOfRange from 0.1 on, where one temperature for the whole part no longer holds.
-    Source: lumped capacity criterion, textbooks; physics.heating; rules/data/materials.yaml, classes.yaml.
-    """
-    assert not isinstance(of, Open)  # the ring has its density
-    away = at if abs(at - room) >= _LEAST_APART else room + _LEAST_APART
-    film = heat_loss(ring, temperature=away, air=room) / (ring.surface * (away - room))
-    k = of.conductivity.value if of.conductivity is not None else usual_for(of.of_class, of.family).conductivity.low
-    found = biot_number(film, depth=ring.depth, conductivity=k)
-    if found >= LUMPED_BELOW:
-        raise OutOfRange(
-            f"the {which} {turns} from the outside in (Biot number {fixed(found, BIOT_DIGITS)}): one temperature for all of it "
-            f"holds below {LUMPED_BELOW:g} only, so what it loses or gains on the way is not known"
-        )
-    return found
 
 
 def shaft_gain(floor: Floor, join: Join, op: int) -> float | Open | None:

@@ -25,6 +25,7 @@ from setupcheck.quantities.joining import JointSizes
 from setupcheck.quantities.pairing import Pair
 from setupcheck.quantities.shop import Floor
 from setupcheck.quantities.stuff import material_of
+from setupcheck.quantities.through import BIOT_DIGITS, one_temperature
 from setupcheck.record import record
 
 SOAK_PER_MM = 180.0
@@ -59,6 +60,17 @@ def ring_of(pair: Pair, emissivity: float = DULL) -> Ring:
             specific_heat=pair.hub.specific_heat.value,
             emissivity=emissivity,
         )
+
+
+def biot(floor: Floor, join: Join, pair: Pair, planned: float) -> float | None:
+    """How much harder heat gets to the surface of the hub than away from there, in still air [1]: h (V/A) / k.
+
+    h of convection and radiation, of dull metal at the planned heat. From 0.1 on the hub is not of one temperature: open.
+    Source: lumped capacity criterion, textbooks; physics.heating; conductivity from materials.yaml or classes.yaml.
+    """
+    if join.by != "shrink":
+        return None
+    return one_temperature("hub", "cools", ring_of(pair), pair.hub, at=planned, room=floor.loaded.job.room)
 
 
 def carry_loss(
@@ -259,6 +271,15 @@ _PAIR = {"pair": "fit.pair"}
 _NEEDED, _SHAFT = {"needed": "heat.needed"}, {"shaft_at": "heat.shaft_at"}
 
 HEAT = (
+    Quantity(
+        "heat.biot",
+        "join",
+        "1",
+        BIOT_DIGITS,
+        biot,
+        {"floor": "route.floor", "join": ":", "pair": "fit.pair", "planned": "heat.planned_low"},
+        "whether the hub has one temperature throughout while it is carried",
+    ),
     Quantity(
         "heat.carry_loss",
         "join",

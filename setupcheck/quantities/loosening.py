@@ -19,7 +19,7 @@ def holds_to(pair: Pair, least: float, smoothing: float, friction: float, asked:
     if asked <= 0.0:
         return None  # without a load it holds until it is loose
     unit = force_held(pair, 1.0, friction)  # for each mm of interference, as pressure is straight in it
-    return _finite(
+    return _as_far_as_known(
         holding_temperature(least - smoothing, needed=asked / unit, diameter=pair.diameter, **_expansions(pair))
     )
 
@@ -29,7 +29,7 @@ def loosens_at(pair: Pair, least: float, smoothing: float) -> float | None:
 
     None where none up to MEANS_END does that: see `tight_to`.  Source: physics.heating.
     """
-    return _finite(loosening_temperature(least - smoothing, diameter=pair.diameter, **_expansions(pair)))
+    return _as_far_as_known(loosening_temperature(least - smoothing, diameter=pair.diameter, **_expansions(pair)))
 
 
 def tight_to(pair: Pair, least: float, smoothing: float) -> float | None:
@@ -62,7 +62,7 @@ def _expansions(pair: Pair) -> dict[str, float]:
     }
 
 
-def _finite(temperature: float) -> float | None:
+def _as_far_as_known(temperature: float) -> float | None:
     """None where no warmth up to MEANS_END loosens the joint, as far as expansions are known."""
     if temperature > MEANS_END:
         return None

@@ -8,12 +8,13 @@ from setupcheck.jobfile.setups import Join
 from setupcheck.physics.carrying import Body, opened, time_open
 from setupcheck.physics.heating import BRIGHT, DULL, REFERENCE_TEMPERATURE, joining_play
 from setupcheck.quantities.book import Open, Quantity
-from setupcheck.quantities.chilling import contraction, one_temperature, out_of_the_cold, seat_of
+from setupcheck.quantities.chilling import contraction, out_of_the_cold, seat_of
 from setupcheck.quantities.joining import JointSizes
 from setupcheck.quantities.joint_heat import ring_of, unheated
 from setupcheck.quantities.pairing import Pair
 from setupcheck.quantities.shop import Floor
 from setupcheck.quantities.stuff import material_of
+from setupcheck.quantities.through import one_temperature
 from setupcheck.record import record
 
 SPARE = 20.0

@@ -50,7 +50,6 @@ from setupcheck.quantities.stated import STATED
 from setupcheck.quantities.strength import STRENGTH
 from setupcheck.quantities.then_now import THEN_NOW
 from setupcheck.quantities.thread import THREAD
-from setupcheck.quantities.through import THROUGH
 from setupcheck.quantities.tilting import TILT
 from setupcheck.quantities.truing import TRUING
 from setupcheck.quantities.turning import TURNING
@@ -321,7 +320,6 @@ TABLES: tuple[Quantity, ...] = (
     *HEAT,
     *OPENING,
     *HEAT_CHECKS,
-    *THROUGH,
     *BESIDE,
     *CUTTING,
     *SHAPE,

@@ -3,10 +3,9 @@
 from __future__ import annotations
 
 import math
-import textwrap
 import unicodedata
 
-from setupcheck.errors import kept_together
+from setupcheck.errors import in_lines
 from setupcheck.notation import FACTOR, show
 from setupcheck.quantities.book import INCH, Book, Scope
 from setupcheck.quantities.requirements import spoken
@@ -50,15 +49,7 @@ def finer(unit: str, *, inches: bool) -> tuple[str, int]:
 
 def wrap(text: str, *, first: str = "", rest: str = "") -> list[str]:
     """Lines of at most 80 columns, everything a terminal would obey taken out."""
-    lines = textwrap.wrap(
-        kept_together(clean(text)),
-        WIDTH,
-        initial_indent=first,
-        subsequent_indent=rest,
-        break_long_words=False,
-        break_on_hyphens=False,
-    )
-    return [line.replace("\u00a0", " ") for line in lines] or [first.rstrip()]
+    return in_lines(clean(text), WIDTH, first=first, rest=rest) or [first.rstrip()]
 
 
 def title_of(scope: Scope) -> str:

@@ -1,4 +1,4 @@
-"""From rows to points, and from points to places, means, figures and axes: each step on few readings, by hand."""
+"""From rows to points: each step on few readings, by hand."""
 
 from __future__ import annotations
 
@@ -7,21 +7,13 @@ from pathlib import Path
 
 import numpy as np
 import pytest
-from scipy import stats
 
 from setupcheck.division import points as module
 from setupcheck.division.columns import ARCSEC
-from setupcheck.division.design import Term, columns, sums_of
-from setupcheck.division.eccentric import Wheel, _chance, _looks, _side, apart, eccentric
-from setupcheck.division.fit import Fit, fitted
 from setupcheck.division.points import Points, Prepared, gap_of, prepare, without
 from setupcheck.division.readings import Readings, read_test
 from setupcheck.division.reduction import reduce as reduced
-from setupcheck.division.repeatability import figures, repeatability, sighting
-from setupcheck.division.results import Eccentric, Flanks, Interval, Length, Wave
-from setupcheck.division.stations import closure, means_of, per_mean, places_read, range_of
 from setupcheck.errors import SetupcheckError
-from setupcheck.physics.student_t import f_above
 
 
 def written(folder: Path, *lines: str) -> Readings:
@@ -279,215 +271,9 @@ def test_points_without_some_keep_all_columns_in_step() -> None:
     assert list(module._tidied(without(data, np.array([0, 1]))).run) == [0, 0]
 
 
-# -- stations --------------------------------------------------------------------------------------------------------
-
-
-def test_places_are_whole_pitches_from_the_first() -> None:
-    """72 teeth: 5 deg. 0, 5, 10 and 360 are two more and the first again; 7 is none; 0.04 deg are 0.008 of a pitch."""
-    assert places_read(points([0, 5, 10, 360, 7, 5.04, 355], [0] * 7), 72) == 4
-    assert places_read(points([3, 8, 5], [0] * 3), 72) == 2
-    assert places_read(points([0, 5.0525, -5], [0] * 3), 72) == 2
-
-
-def test_a_mean_rests_on_the_readings_of_its_station_in_its_direction() -> None:
-    degrees = [0, 90, 180, 0, 90, 360, 90, 180]
-    assert per_mean(points(degrees, [0] * 8, direction=[1, 1, 1, -1, -1, 1, 1, 1])) == 1
-    assert per_mean(points(degrees[:3] * 2 + [360.0], [0] * 7)) == 2
-
-
-@pytest.mark.parametrize(
-    ("degrees", "run", "direction", "wanted"),
-    [
-        ([0, 90, 0], None, None, 2.0),
-        ([0, 90, 180], None, None, None),
-        ([0, 90, 360, 0], None, None, 3.0),  # the last of them
-        ([10, 90, 10, 90, 10], None, [1, 1, 1, -1, -1], 2.0),  # in the first one's direction
-        ([10, 90, 90, 10], None, [1, 1, -1, -1], 3.0),  # else in any
-        ([10, 90, 10, 10], [0, 0, 0, 1], None, 2.0),  # of its own run
-        ([10, 90, 10], [0, 0, 1], None, None),
-        ([350, 90, 10, 350], None, None, 3.0),
-    ],
-)
-def test_closure_is_the_last_less_the_first_of_the_station_that_begins(
-    degrees: list[float], run: list[int] | None, direction: list[int] | None, wanted: float | None
-) -> None:
-    """Readings 5, 6, 7, …: what is found is how many rows on the station comes again."""
-    data = points(degrees, [5.0 + j for j in range(len(degrees))], run=run, direction=direction)
-    assert closure(data, whole=True) == wanted
-    if degrees[-1] == 0 and 360 in degrees:
-        assert closure(data, whole=False) == 3.0
-
-
-def by_terms(data: Points, *terms: Term) -> Fit:
-    return fitted(data, sums_of(data, terms), terms)
-
-
-def test_means_and_their_range_by_hand() -> None:
-    """Two runs of zeros 10 and 20, no drift: stations 0, 120, 240 stand 0, 1, 5 and 0, 3, 5 off them."""
-    y = [10.0, 11.0, 15.0, 20.0, 23.0, 25.0]
-    data = points([0, 120, 240] * 2, y, run=[0] * 3 + [1] * 3)
-    fit = Fit((Term("zero", 0.0), Term("zero", 1.0)), np.array([10.0, 20.0]), np.eye(2), np.zeros(6), 0.0, 4)
-    assert range_of(data, fit) == pytest.approx(5.0)
-    means = means_of(data, fit, turned=False)
-    assert [(round(math.degrees(m.theta)), m.value, m.readings, m.direction) for m in means] == [
-        (0, 0.0, 2, 0), (120, 2.0, 2, 0), (240, 5.0, 2, 0)
-    ]  # fmt: skip
-    back = means_of(data, fit, turned=True)
-    assert [(round(math.degrees(m.theta)), m.value) for m in back] == [(0, 0.0), (-120, -2.0), (-240, -5.0)]
-    # without the first wave: what numpy leaves of it
-    waves = by_terms(data, Term("zero", 0.0), Term("zero", 1.0), Term("wave", 1.0))
-    matrix = np.column_stack([c for t in waves.terms for c in columns(t, data, slice(None))])
-    rest = data.y - matrix @ waves.values
-    each = (rest[:3] + rest[3:]) / 2.0
-    assert range_of(data, waves, centred=True) == pytest.approx(each.max() - each.min(), abs=1e-12)
-    assert range_of(data, waves) > range_of(data, waves, centred=True) + 1.0
-
-
-def test_the_range_is_that_of_the_worse_direction() -> None:
-    data = points([0, 90, 0, 90], [0.0, 2.0, 1.0, 8.0], direction=[1, 1, -1, -1])
-    fit = Fit((Term("zero", 0.0),), np.zeros(1), np.eye(1), np.zeros(4), 0.0, 3)
-    assert range_of(data, fit) == 7.0
-    assert {m.direction: m.value for m in means_of(data, fit, turned=False) if m.theta == 0.0} == {1: 0.0, -1: 1.0}
-
-
-# -- positioning -----------------------------------------------------------------------------------------------------
-
-
-def test_only_stations_read_twice_each_way_count() -> None:
-    """Stations 0 and 1 twice each way, station 2 twice up and once down: it has no part in any figure."""
-    rows = [(0, 1, 0.0, 1.0), (0, 1, 1.0, 2.0), (0, 1, 2.0, 50.0), (0, -1, 0.0, 0.0), (0, -1, 1.0, 0.0), (0, -1, 2.0, -50.0),
-            (1, 1, 0.0, 1.0), (1, 1, 1.0, 2.0), (1, 1, 2.0, 50.0), (1, -1, 0.0, 0.0), (1, -1, 1.0, 0.0)]  # fmt: skip
-    run, direction, theta, y = (list(c) for c in zip(*rows, strict=True))
-    found = repeatability(points(list(np.degrees(theta)), y, run=run, direction=direction))  # type: ignore[arg-type]
-    assert not isinstance(found, str)
-    assert (found.stations, found.runs, found.E, found.B, found.mean_B, found.M) == (2, 2, 2.0, 2.0, 1.5, 0.5)
-    one = [r for r in rows if r[2] != 1.0]
-    run, direction, theta, y = (list(c) for c in zip(*one, strict=True))
-    assert "2 runs each way" in str(repeatability(points(list(np.degrees(theta)), y, run=run, direction=direction)))  # type: ignore[arg-type]
-
-
-def test_sets_of_sights_need_two_runs_with_two_stations_in_common() -> None:
-    def found(rows: list[tuple[int, int, float, float]]) -> tuple[float, int] | None:
-        run, direction, theta, y = (list(c) for c in zip(*rows, strict=True))
-        return sighting(points(theta, y, run=run, direction=direction))
-
-    # rows 1 3 and 2 6: off their targets' means -.5 -1.5, .5 1.5; off their own -+ .5; s^2 = 4 x .25 / 1
-    two = [(0, 1, 0.0, 1.0), (0, 1, 90.0, 3.0), (0, 1, 180.0, 9.0), (1, 1, 0.0, 2.0), (1, 1, 90.0, 6.0)]
-    assert found(two) == (pytest.approx(1.0), 1)
-    assert found([*two, (1, 1, 90.0, 77.0)]) == (pytest.approx(1.0), 1)  # the first of a station counts
-    assert found(two[:4]) is None
-    assert found(two[:3]) is None
-    assert found([(r, -1, t, y) for r, _, t, y in two]) == (pytest.approx(1.0), 1)
-    # forward is asked first
-    mixed = [*two, *((r, -1, t, 10.0 * y) for r, _, t, y in two)]
-    assert found(mixed) == (pytest.approx(1.0), 1)
-
-
-# -- eccentric -------------------------------------------------------------------------------------------------------
-
-ALPHA = math.radians(20.0)
-
-
-def wave(direction: float, within: float | None = 0.1, harmonic: float = 1.0, why: str = "") -> Wave:
-    a, b = 1e-4 * math.cos(direction), 1e-4 * math.sin(direction)
-    length = Length(1e-4, 0.8e-4, 1.3e-4, direction % math.tau, within)
-    return Wave("once per turn", harmonic, a, b, (1e-12, 0.0, 1e-12), 9.0, 0.0, length, why)
-
-
-@pytest.mark.parametrize(("way", "turned", "grows", "side"), [
-    (1, False, 1, -1), (-1, False, 1, 1), (1, True, 1, 1), (-1, True, 1, -1), (1, False, -1, 1), (0, False, 1, 0),
-])  # fmt: skip
-def test_one_flank_leans_its_wave_by_the_pressure_angle(way: int, turned: bool, grows: int, side: int) -> None:
-    """One flank is highest at phi - 90 deg - side alpha: phi is 90 deg and side alpha on from there; e = r cos(alpha) delta."""
-    data = points([0, 90, 180, 270], [0] * 4, direction=[way] * 4)
-    fit = by_terms(data, Term("zero", 0.0), Term("wave", 1.0))
-    at = math.radians(300.0)
-    off = eccentric(fit, 1.0, 9.0, (wave(at),), Wheel(36, 50.0, ALPHA), turned=turned, grows=grows, points=data)
-    assert off is not None
-    assert _side(data, turned=turned) * grows == side == off.side
-    assert off.flanks == ("one" if side else "unknown")
-    assert off.direction == pytest.approx((at + math.pi / 2.0 + side * ALPHA) % math.tau)
-    assert off.within == pytest.approx(0.1 + (0.0 if side else ALPHA))
-    assert (off.amount.value, off.amount.low, off.amount.high) == pytest.approx(
-        tuple(50.0 * math.cos(ALPHA) * x for x in (1e-4, 0.8e-4, 1.3e-4))
-    )
-    assert (off.looks, off.open) == ("", "")
-    # teeth of 10 deg: tooth n spans 10 (n - 1) to 10 n
-    assert off.tooth == math.floor(math.degrees(off.direction) / 10.0) + 1
-    bare = eccentric(fit, 1.0, 9.0, (wave(at),), Wheel(36, 50.0), turned=turned, grows=grows, points=data)
-    assert bare is not None
-    assert bare.direction == pytest.approx((at + math.pi / 2.0) % math.tau)
-    assert bare.amount.value == pytest.approx(50.0 * 1e-4)
-    assert bare.open == "the pressure angle of the teeth is not stated"
-    assert bare.within == pytest.approx(0.1)
-    shut = eccentric(
-        fit, 1.0, 9.0, (wave(at, None, why="a reason"),), Wheel(36, 50.0), turned=False, grows=1, points=data
-    )
-    assert shut is not None and (shut.open, shut.within) == ("a reason", None)
-    for waves, wheel in (((wave(at, harmonic=2.0),), Wheel(36, 50.0)), ((wave(at),), Wheel(36)), ((), Wheel(36, 50.0))):
-        assert eccentric(fit, 1.0, 9.0, waves, wheel, turned=False, grows=1, points=data) is None
-
-
-def test_readings_of_both_directions_name_no_flank() -> None:
-    assert _side(points([0, 90], [0, 0], direction=[1, -1]), turned=False) == 0
-    assert _side(points([0, 90], [0, 0], direction=[1, 0]), turned=True) == 0
-
-
-@pytest.mark.parametrize(("share", "grows", "looks"), [
-    (1.0, 1, "eccentric"), (0.0, 1, "division"), (0.5, 1, "neither"), (1.0, -1, "neither"), (-1.0, -1, "eccentric"),
-])  # fmt: skip
-def test_both_flanks_look_like_an_eccentric_ring_or_like_dividing(share: float, grows: int, looks: str) -> None:
-    """Mean (a, b) of an eccentric ring has the difference 2 tan(alpha) (-b, a); of dividing none."""
-    mean, terms = np.array([3.0, 4.0]), (Term("wave", 1.0), Term("swing", 1.0))
-    seen = share * 2.0 * math.tan(ALPHA) * np.array([-4.0, 3.0])
-    fit = Fit(terms, np.concatenate([mean, seen]), np.eye(4), np.zeros(1), 0.0, 9)
-    assert _looks(fit, 0.01, 30.0, ALPHA, grows) == looks
-    assert _looks(fit, 100.0, 30.0, ALPHA, grows) == "undecided"
-
-
-def test_the_chance_of_a_vector_is_hotellings() -> None:
-    vector, covariance = np.array([2.0, -1.0]), np.array([[2.0, 0.3], [0.3, 0.5]])
-    square = float(vector @ np.linalg.inv(covariance) @ vector)
-    assert _chance(vector, covariance, 7.0) == pytest.approx(f_above(square / 2.0, 2.0, 7.0))
-    assert _chance(vector, covariance, 0.3) == pytest.approx(f_above(square / 2.0, 2.0, 1.0))
-    assert _chance(vector, covariance, 1e9) == pytest.approx(math.exp(-square / 2.0), rel=1e-3)  # chi square of two
-    assert _chance(vector, np.zeros((2, 2)), 7.0) == 1.0
-
-
-@pytest.mark.parametrize("missing", ["flanks", "off", "looks", "alpha", "radius"])
-def test_nothing_is_taken_apart_where_a_part_is_missing(missing: str) -> None:
-    flanks: Flanks | None = Flanks(
-        (1e-4, 2e-4, 3e-5, 1e-5), tuple(tuple(1e-12 * (i == j) for j in range(4)) for i in range(4))
-    )
-    off: Eccentric | None = Eccentric(
-        Interval(1.0, 1.0, 1.0), 0.0, 0.1, 1, "both", 0, "division" if missing == "looks" else "neither"
-    )
-    wheel = Wheel(30, None if missing == "radius" else 40.0, None if missing == "alpha" else ALPHA)
-    flanks, off = None if missing == "flanks" else flanks, None if missing == "off" else off
-    assert apart(flanks, off, wheel, 20.0) is None
-
-
-def test_what_is_taken_apart_is_known_as_the_wider_of_its_two() -> None:
-    square = [[0.0] * 4 for _ in range(4)]
-    square[2][2], square[3][3] = 4e-12, 9e-12
-    off = Eccentric(Interval(1.0, 1.0, 1.0), 0.0, 0.1, 1, "both", 0, "neither")
-    found = apart(Flanks((1e-4, 2e-4, 3e-5, 1e-5), tuple(map(tuple, square))), off, Wheel(30, 40.0, ALPHA), 20.0)
-    assert found is not None
-    assert found.within == pytest.approx(40.0 * stats.t.ppf(0.975, 20) * 3e-6 / (2.0 * math.tan(ALPHA)))
-    assert found.tooth == Wheel(30).tooth(found.direction)
-
-
 def test_times_of_less_than_a_minute_are_times(tmp_path: Path) -> None:
     found = ready(tmp_path, "angle_deg,deviation_arcsec,minutes", "0,0,7", "90,0,7.1", "180,0,7.5")
     assert found.points.t == pytest.approx([0.0, 0.2, 1.0])
-
-
-def test_the_lowest_of_both_directions_counts_whichever_it_is() -> None:
-    up, down = (np.array([1.0, 9.0]), np.array([2.0, 0.5])), (np.array([5.0, 4.0]), np.array([0.5, 1.0]))
-    found = figures(up, down, 2)
-    assert found.A == 10.0 - (1.0 - 4.0)  # 9 + 1 and 1 - 4, both forward
-    assert (figures(down, up, 2).A, found.up, found.down) == (13.0, (13.0, 8.0, 8.0), (6.0 - 2.0, 4.0, 1.0))
-    assert (found.R, found.E, found.B, found.mean_B, found.M) == (9.0, 8.0, 5.0, 0.5, 3.5)
 
 
 def test_uneven_stations_turned_past_have_the_same_waves_mirrored(tmp_path: Path) -> None:

@@ -8,8 +8,8 @@ import pytest
 
 from setupcheck.physics.heating import DULL, LARGEST_CHILLED, LARGEST_HEATED, Ring, rayleigh_number
 from setupcheck.quantities.book import Known, Open, OutOfRange
-from setupcheck.quantities.chilling import one_temperature
 from setupcheck.quantities.material_data import material
+from setupcheck.quantities.through import one_temperature
 from tests.unit.quantities.joint_text import answer, changed, finding, number, reviewed
 
 # journal 0.5 mm over its nominal in a 60 mm bore: far beyond what bronze stands (all sizes invented)

@@ -10,7 +10,7 @@ from setupcheck.jobfile.service import Warmth
 from setupcheck.physics import interference as fits
 from setupcheck.quantities.book import Open, OutOfRange
 from setupcheck.quantities.friction import Friction
-from setupcheck.quantities.loosening import _finite, yields_below
+from setupcheck.quantities.loosening import _as_far_as_known, yields_below
 from setupcheck.quantities.pairing import RZ_PER_RA, Pair
 from setupcheck.quantities.strength import (
     ON_BREAKING,
@@ -213,9 +213,9 @@ def test_small_answers_of_a_joint_by_hand() -> None:
     pair = value(changed(), "fit.pair")
     assert isinstance(pair, Pair)
     assert length_ratio(pair) == pytest.approx(30.0 / 60.0)
-    assert (_finite(math.inf), _finite(20.0), _finite(55.5)) == (None, 20.0, 55.5)
+    assert (_as_far_as_known(math.inf), _as_far_as_known(20.0), _as_far_as_known(55.5)) == (None, 20.0, 55.5)
     with pytest.raises(OutOfRange, match="does not hold even at 20 degC"):
-        _finite(19.999)
+        _as_far_as_known(19.999)
     assert torque_held(pair, 100.0) == pytest.approx(100.0 * 30.0)
     assert slip_safety(100.0, 60.0) == pytest.approx(2.0)  # the slip factor of 1.2 put back
     assert slip_safety(100.0, 0.0) is None
