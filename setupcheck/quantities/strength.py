@@ -9,7 +9,8 @@ from setupcheck.jobfile.setups import Join
 from setupcheck.notation import show
 from setupcheck.physics import interference as fits
 from setupcheck.physics.criteria import Criterion, elastic_interference
-from setupcheck.quantities.book import Open, Quantity
+from setupcheck.physics.materials import Question
+from setupcheck.quantities.book import Open, OutOfRange, Quantity
 from setupcheck.quantities.friction import Friction
 from setupcheck.quantities.pairing import (
     BENCH,
@@ -37,17 +38,40 @@ REFERENCE = 20.0  # degC of all sizes, ISO 1
 def grip_least(pair: Pair, least: float, smoothing: float, service: tuple[Warmth, Warmth]) -> float:
     """Least interference in service [mm]: loosest pair, smoothed, in the state that takes most of it, 20 degC among them.
 
-    U = U_min - smoothing + D [alpha_I (T_I - 20) - alpha_A (T_A - 20)], hub expansion high, shaft low.  Source: physics.heating.
-    """
-    return min(pair.at(least - smoothing, "holding", state) for state in (*service, BENCH))
-
-
-def grip_most(pair: Pair, most: float, service: tuple[Warmth, Warmth]) -> float:
-    """Largest interference in service or on the bench [mm]: tightest pair, nothing smoothed, at its worst temperature.
-
+    U = U_min - smoothing + D [alpha_I (T_I - 20) - alpha_A (T_A - 20)], hub expansion high, shaft low.
+    Raises: OutOfRange where one state is beyond what expansions are known for, but for a pair that is loose in another.
     Source: physics.heating.
     """
-    return max(pair.at(most, "strength", state) for state in (*service, BENCH))
+    known, unknown = _in_states(pair, least - smoothing, "holding", service)
+    if unknown is not None and min(known) > 0.0:
+        raise unknown
+    return min(known)
+
+
+def grip_most(pair: Pair, most: float, service: tuple[Warmth, Warmth], limit: tuple[float, str] | None = None) -> float:
+    """Largest interference in service or on the bench [mm]: tightest pair, nothing smoothed, at its worst temperature.
+
+    limit  as `limit_of`
+    Raises: OutOfRange where one state is beyond what expansions are known for, but for a pair that yields in another.
+    Source: physics.heating.
+    """
+    known, unknown = _in_states(pair, most, "strength", service)
+    if unknown is not None and (limit is None or max(known) <= limit[0]):
+        raise unknown
+    return max(known)
+
+
+def _in_states(
+    pair: Pair, interference: float, question: Question, service: tuple[Warmth, Warmth]
+) -> tuple[list[float], OutOfRange | None]:
+    """An interference in all states whose expansions are known [mm], 20 degC among them; why it is not known in another."""
+    known, unknown = [], None
+    for state in (*service, BENCH):
+        try:
+            known.append(pair.at(interference, question, state))
+        except OutOfRange as why:
+            unknown = why
+    return known, unknown
 
 
 def limit_of(floor: Floor, pair: Pair) -> tuple[float, str] | Open:
@@ -242,8 +266,9 @@ STRENGTH = (
         "um",
         1,
         grip_most,
-        {**_PAIR, "most": "fit.interference_most", "service": "fit.service"},
+        {**_PAIR, "most": "fit.interference_most", "service": "fit.service", "limit": "settled fit.limit"},
         "largest interference in service",
+        {"limit": None},
     ),
     Quantity(
         "fit.limit",

@@ -35,7 +35,7 @@ def tight(grip: float, reached: float | None, limit: Limit) -> float:
     return elastic_only(grip, reached, limit, "tightest")
 
 
-def loose(grip: float, reached: float, limit: Limit) -> float:
+def loose(grip: float, reached: float | None, limit: Limit) -> float:
     """An interference of the loosest pair while that one stays elastic [mm].  Source: `elastic_only`, with its validity.
 
     A tighter pair that yields keeps at least the pressure it yielded at and so no less than this one, cold or warm.
@@ -58,7 +58,7 @@ def loosest_reaches(pair: Pair, least: float, service: tuple[Warmth, Warmth] | N
 
 
 _TIGHT = {"reached": "settled fit.grip_most", "limit": "settled fit.limit"}
-_LOOSE = {"reached": "fit.loosest_reaches", "limit": "settled fit.limit"}
+_LOOSE = {"reached": "settled fit.loosest_reaches", "limit": "settled fit.limit"}
 _UNKNOWN = {"reached": None, "limit": None}
 _GRIPS = {
     "fit.interference_most": "interference of the tightest pair",

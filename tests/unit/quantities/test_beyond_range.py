@@ -155,3 +155,18 @@ def test_a_shaft_that_is_cold_outside_only_has_no_gain() -> None:
     stainless = material("X5CrNi18-10")
     with pytest.raises(OutOfRange, match=r"the shaft warms from the outside in \(Biot number 0\.[12]"):
         one_temperature("shaft", "warms", ring, stainless, at=-190.0, room=20.0)
+
+
+def test_a_pair_that_yields_as_drawn_fails_whatever_is_not_known_of_its_service() -> None:
+    """A limit that is passed at 20 degC is passed, though nobody knows what 210 degC does to the joint."""
+    hot = ("serves_at: [10 degC, 25 degC]", "serves_at: [10 degC, 210 degC]")
+    assert finding(changed(hot, text=TOO_TIGHT), "FIT-004").verdict == "fail"
+    assert number(changed(hot, text=TOO_TIGHT), "fit.grip_most") == number(TOO_TIGHT, "fit.grip_most")
+
+
+def test_a_pair_that_is_loose_as_drawn_holds_nothing_whatever_is_not_known_of_its_service() -> None:
+    # 60 n6 in 60 H6: 1 um at least, of which the peaks of both surfaces take 0.8 (4 + 2.5) um
+    hot = ("serves_at: [10 degC, 25 degC]", "serves_at: [10 degC, 210 degC]")
+    loose = changed(("diameter: 60 r6", "diameter: 60 n6"), hot)
+    assert number(loose, "fit.grip_least") < 0.0
+    assert finding(loose, "FIT-003").verdict == "fail"
