@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterator, Sequence
+from collections.abc import Iterator
 
 from setupcheck.flow import Review
 from setupcheck.ledger.combine import TRIALS
@@ -23,7 +23,7 @@ from setupcheck.report.rests import how_known, measure_first, record_used, rests
 from setupcheck.report.taken import standing_on, taken, taken_in_lines
 from setupcheck.report.then_now import then_now
 from setupcheck.report.uncomputed import in_lines, uncomputed
-from setupcheck.report.wording import clean, finer, in_unit, title_of, unit_of, wrap
+from setupcheck.report.wording import clean, finer, in_unit, title_of, unit_of, waiting_alike, wrap
 from setupcheck.report.worked_out import worked_out
 from setupcheck.rulebook import VERDICTS, CautionLine, Finding
 
@@ -148,21 +148,8 @@ def _findings(found: Review, everything: bool) -> Iterator[str]:
     if not shown:
         return
     yield "FINDINGS"
-    for rules, finding in _alike(shown):
+    for rules, finding in waiting_alike(shown):
         yield from _finding(found, finding, rules)
-
-
-def _alike(shown: Sequence[Finding]) -> Iterator[tuple[str, Finding]]:
-    """Each finding once; open ones at one place that wait for the same thing together, with the rules that wait for it."""
-    groups: dict[object, list[Finding]] = {}
-    for finding in shown:
-        same = (
-            (finding.at, finding.message, finding.missing) if finding.verdict == "open" else finding.rule,
-            finding.key,
-        )
-        groups.setdefault(same, []).append(finding)
-    for group in groups.values():
-        yield ", ".join(finding.rule for finding in group), group[0]
 
 
 def _finding(found: Review, finding: Finding, rules: str) -> Iterator[str]:

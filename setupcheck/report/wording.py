@@ -4,12 +4,14 @@ from __future__ import annotations
 
 import math
 import unicodedata
+from collections.abc import Iterator, Sequence
 
 from setupcheck.errors import in_lines
 from setupcheck.notation import FACTOR, show
 from setupcheck.quantities.book import INCH, Book, Scope
 from setupcheck.quantities.requirements import spoken
 from setupcheck.quantities.scopes import stack_of
+from setupcheck.rulebook import Finding
 
 WIDTH = 80
 FINE_BELOW = 0.010
@@ -95,3 +97,17 @@ def as_stated(value: float, *, inches: bool) -> str:
     unit = INCH["um"] if inches else "um"
     texts = [show(value, unit, digits) for digits in range(4)]
     return next((t for t in texts if abs(float(t.split()[0]) - value * FACTOR[unit]) < 1e-6), texts[-1])
+
+
+def waiting_alike(shown: Sequence[Finding]) -> Iterator[tuple[str, Finding]]:
+    """Each finding once; open ones at one place that wait for the same thing together, with the rules that wait for it."""
+    groups: dict[object, list[Finding]] = {}
+    for finding in shown:
+        same = (
+            (finding.at, finding.message, finding.missing) if finding.verdict == "open" else finding.rule,
+            finding.key,
+            finding.house,
+        )
+        groups.setdefault(same, []).append(finding)
+    for group in groups.values():
+        yield ", ".join(finding.rule for finding in group), group[0]

@@ -242,3 +242,14 @@ def test_what_turns_and_jaws_that_stand_out_are_told_at_the_machine() -> None:
         "at 600 rev/min; the chuck is marked 2500 rev/min at the most; 0.5 kg stand 10.00 mm off the axis; the bar sticks out "
         "40.00 mm behind the spindle"
     ) == held["Turns"]
+
+
+def test_open_findings_that_wait_for_the_same_thing_stand_in_one_row() -> None:
+    """Six rules wait for the heat of one hub: one row names them all, as the report does."""
+    text = shipped("jobs/coupling-hub.yaml").read_text(encoding="utf-8")
+    found = reviewed(changed(text, ("hub: 260 degC, ", "")))
+    waiting = {f.rule for f in found.evaluation.findings if f.missing == ("setups.50.join.heat.hub",)}
+    assert len(waiting) > 3
+    rows = [one for one in sheet_of(found).troubles if one.remedy == "Fill setups.50.join.heat.hub"]
+    assert waiting == {rule for one in rows for rule in one.rule.split(", ")}
+    assert len(rows) < len(waiting)

@@ -25,7 +25,7 @@ from setupcheck.report.sheet.showing import paper
 from setupcheck.report.sheet.words import ROLE, Said, Words
 from setupcheck.report.text import counts, how_far, limits_in_words
 from setupcheck.report.uncomputed import in_lines, uncomputed
-from setupcheck.report.wording import finer, title_of, unit_of
+from setupcheck.report.wording import finer, title_of, unit_of, waiting_alike
 from setupcheck.report.worked_out import worked_out
 from setupcheck.rulebook.records import CautionLine, Finding
 
@@ -134,10 +134,10 @@ def _tightest(found: Review, drawn: dict[str, Picture]) -> tuple[tuple[Picture, 
 
 def _troubles(found: Review, op: int | None = None) -> list[Trouble]:
     """What is not passed, in the whole job or in one operation."""
+    shown = [f for f in found.evaluation.findings if f.verdict != "pass" and op in (None, f.op)]
     return [
-        Trouble(f.verdict, f.rule, paper(f.at or "job", 80), f.line, paper(_said(f), 400), paper(_do(found, f), 400))
-        for f in found.evaluation.findings
-        if f.verdict in ("fail", "open", "warn", "waived") and op in (None, f.op)
+        Trouble(f.verdict, rules, paper(f.at or "job", 80), f.line, paper(_said(f), 400), paper(_do(found, f), 400))
+        for rules, f in waiting_alike(shown)
     ]
 
 

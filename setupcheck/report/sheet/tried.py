@@ -20,7 +20,7 @@ from setupcheck.report.wording import FINE_BELOW, inwards, on_the_dial, title_of
 UNHEARD, KEEP = Accept("no rule looks at it"), Accept("no rule looks at it: keep its limits")
 COMPARED = Accept("the review holds it against the plan")
 BEYOND = "beyond its own limits only if the planner agrees"
-UNTOLD = "cannot be told while this is open: {}"
+UNTOLD = "cannot be told"
 SECOND = math.radians(1.0 / 3600.0)
 LONGEST = 60
 
@@ -45,7 +45,7 @@ class Tried:
 
     def _told(self, one: Allowed) -> Accept:
         if one.untold:
-            return Accept(UNTOLD.format(self._by(one.untold)))
+            return Accept(UNTOLD, f"while this is open: {self._by(one.untold)}")
         if not one.heard:
             return KEEP if one.kind == "size" else UNHEARD
         if one.lost:
