@@ -15,23 +15,10 @@ from setupcheck.division.amplitude import t_at
 from setupcheck.division.design import Sums, Term, blocks, cells, columns, comes_round, design, places, sums_of
 from setupcheck.division.fit import Fit, Scatter, fitted, scatter_of
 from setupcheck.division.points import Points
+from tests.unit.division.few_points import points
 
 Reals = NDArray[np.floating]
 ALL = slice(None)
-
-
-def points(
-    degrees: list[float],
-    y: list[float] | Reals | None = None,
-    *,
-    run: list[int] | None = None,
-    direction: list[int] | None = None,
-) -> Points:
-    n = len(degrees)
-    return Points(
-        np.radians(degrees), np.zeros(n) if y is None else np.array(y, float), np.linspace(0.0, 1.0, n),
-        np.array(run or [0] * n, np.int32), np.array(direction or [0] * n, np.int8), np.arange(n, dtype=np.int32) + 2,
-    )  # fmt: skip
 
 
 def test_every_column_by_hand() -> None:

@@ -8,27 +8,12 @@ import numpy as np
 import pytest
 from scipy import stats
 
-from setupcheck.division.design import Term, sums_of
+from setupcheck.division.design import Term
 from setupcheck.division.eccentric import Wheel, _chance, _looks, _side, apart, eccentric
-from setupcheck.division.fit import Fit, fitted
-from setupcheck.division.points import Points
+from setupcheck.division.fit import Fit
 from setupcheck.division.results import Eccentric, Flanks, Interval, Length, Wave
 from setupcheck.physics.student_t import f_above
-
-
-def points(
-    degrees: list[float], y: list[float], *, run: list[int] | None = None, direction: list[int] | None = None
-) -> Points:
-    n = len(degrees)
-    return Points(
-        np.radians(degrees), np.array(y, float), np.linspace(0.0, 1.0, n), np.array(run or [0] * n, np.int32),
-        np.array(direction or [0] * n, np.int8), np.arange(n, dtype=np.int32) + 2,
-    )  # fmt: skip
-
-
-def by_terms(data: Points, *terms: Term) -> Fit:
-    return fitted(data, sums_of(data, terms), terms)
-
+from tests.unit.division.few_points import by_terms, points
 
 ALPHA = math.radians(20.0)
 

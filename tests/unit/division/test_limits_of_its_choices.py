@@ -17,25 +17,11 @@ from setupcheck.division.design import Sums, Term, sums_of
 from setupcheck.division.eccentric import _chance, _looks
 from setupcheck.division.fit import Fit, fitted, scatter_of
 from setupcheck.division.points import Points, Prepared, prepare
-from setupcheck.division.readings import Readings, read_test
 from setupcheck.division.results import Wave
 from setupcheck.errors import SetupcheckError
+from tests.unit.division.few_points import points, written
 
 ZERO, ONE, TWO = Term("zero", 0.0), Term("wave", 1.0), Term("wave", 2.0)
-
-
-def points(degrees: list[float], y: list[float] | NDArray[np.floating]) -> Points:
-    n = len(degrees)
-    return Points(
-        np.radians(degrees), np.array(y, float), np.linspace(0.0, 1.0, n), np.zeros(n, np.int32), np.zeros(n, np.int8),
-        np.arange(n, dtype=np.int32) + 2,
-    )  # fmt: skip
-
-
-def written(folder: Path, *lines: str) -> Readings:
-    made = folder / "test.csv"
-    made.write_text("\n".join(lines) + "\n", encoding="utf-8")
-    return read_test(made)
 
 
 # -- waves that can be told --------------------------------------------------------------------------------------------

@@ -7,22 +7,11 @@ import math
 import numpy as np
 import pytest
 
-from setupcheck.division.design import Term, columns, sums_of
-from setupcheck.division.fit import Fit, fitted
-from setupcheck.division.points import Points
+from setupcheck.division.design import Term, columns
+from setupcheck.division.fit import Fit
 from setupcheck.division.repeatability import figures, repeatability, sighting
 from setupcheck.division.stations import closure, means_of, per_mean, places_read, range_of
-
-
-def points(
-    degrees: list[float], y: list[float], *, run: list[int] | None = None, direction: list[int] | None = None
-) -> Points:
-    n = len(degrees)
-    return Points(
-        np.radians(degrees), np.array(y, float), np.linspace(0.0, 1.0, n), np.array(run or [0] * n, np.int32),
-        np.array(direction or [0] * n, np.int8), np.arange(n, dtype=np.int32) + 2,
-    )  # fmt: skip
-
+from tests.unit.division.few_points import by_terms, points
 
 # -- stations --------------------------------------------------------------------------------------------------------
 
@@ -61,10 +50,6 @@ def test_closure_is_the_last_less_the_first_of_the_station_that_begins(
     assert closure(data, whole=True) == wanted
     if degrees[-1] == 0 and 360 in degrees:
         assert closure(data, whole=False) == 3.0
-
-
-def by_terms(data: Points, *terms: Term) -> Fit:
-    return fitted(data, sums_of(data, terms), terms)
 
 
 def test_means_and_their_range_by_hand() -> None:

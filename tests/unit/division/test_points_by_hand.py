@@ -10,32 +10,16 @@ import pytest
 
 from setupcheck.division import points as module
 from setupcheck.division.columns import ARCSEC
-from setupcheck.division.points import Points, Prepared, gap_of, prepare, without
-from setupcheck.division.readings import Readings, read_test
+from setupcheck.division.points import Prepared, gap_of, prepare, without
 from setupcheck.division.reduction import reduce as reduced
 from setupcheck.errors import SetupcheckError
-
-
-def written(folder: Path, *lines: str) -> Readings:
-    made = folder / "test.csv"
-    made.write_text("\n".join(lines) + "\n", encoding="utf-8")
-    return read_test(made)
+from tests.unit.division.few_points import points, written
 
 
 def ready(
     folder: Path, *lines: str, count: int = 72, worm: float | None = None, start: float = 0.0, turn: int = 1
 ) -> Prepared:
     return prepare(written(folder, *lines), count=count, worm_ratio=worm, start=start, turn=turn)
-
-
-def points(
-    degrees: list[float], y: list[float], *, run: list[int] | None = None, direction: list[int] | None = None
-) -> Points:
-    n = len(degrees)
-    return Points(
-        np.radians(degrees), np.array(y, float), np.linspace(0.0, 1.0, n), np.array(run or [0] * n, np.int32),
-        np.array(direction or [0] * n, np.int8), np.arange(n, dtype=np.int32) + 2,
-    )  # fmt: skip
 
 
 # -- stations and times ----------------------------------------------------------------------------------------------

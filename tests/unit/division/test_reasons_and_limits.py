@@ -12,16 +12,11 @@ from scipy import stats
 from setupcheck.division import reduction
 from setupcheck.division.columns import ARCSEC
 from setupcheck.division.design import Term
-from setupcheck.division.readings import Readings, read_test
+from setupcheck.division.readings import read_test
 from setupcheck.division.reduction import reduce, warnings
 from setupcheck.division.results import Reduced, Unseen
 from setupcheck.errors import SetupcheckError
-
-
-def written(folder: Path, *lines: str) -> Readings:
-    made = folder / "test.csv"
-    made.write_text("\n".join(lines) + "\n", encoding="utf-8")
-    return read_test(made)
+from tests.unit.division.few_points import written
 
 
 def plain(folder: Path, degrees: list[float], y: list[float], *, count: int = 72) -> Reduced:

@@ -9,16 +9,10 @@ import pytest
 
 from setupcheck.division.columns import BadCell, reader
 from setupcheck.division.points import prepare
-from setupcheck.division.readings import Readings, read_test
 from setupcheck.errors import SetupcheckError
+from tests.unit.division.few_points import written
 
 BACK_AND_FORTH, OTHER_WAY = "back and forth", "the other way than its direction"
-
-
-def written(folder: Path, *lines: str) -> Readings:
-    made = folder / "test.csv"
-    made.write_text("\n".join(lines) + "\n", encoding="utf-8")
-    return read_test(made)
 
 
 @pytest.mark.parametrize(

@@ -18,29 +18,9 @@ from setupcheck.division.eccentric import Wheel, apart
 from setupcheck.division.fit import fitted
 from setupcheck.division.owners import Owner
 from setupcheck.division.points import Points, prepare
-from setupcheck.division.readings import Readings, read_test
 from setupcheck.division.reduction import _against_flags, _found, _without, reduce
 from setupcheck.division.results import Eccentric, Flanks, Interval, Wave
-
-
-def points(degrees: list[float], y: list[float] | None = None, *, run: list[int] | None = None) -> Points:
-    """Stations in the order of time; nothing said of their direction."""
-    n = len(degrees)
-    return Points(
-        np.radians(degrees), np.zeros(n) if y is None else np.array(y), np.linspace(0.0, 1.0, n),
-        np.zeros(n, np.int32) if run is None else np.array(run, np.int32), np.zeros(n, np.int8),
-        np.arange(n, dtype=np.int32) + 2,
-    )  # fmt: skip
-
-
-def round_the_circle(stations: int, times: int) -> list[float]:
-    return [360.0 * j / stations for _ in range(times) for j in range(stations)]
-
-
-def written(folder: Path, *lines: str) -> Readings:
-    made = folder / "test.csv"
-    made.write_text("\n".join(lines) + "\n", encoding="utf-8")
-    return read_test(made)
+from tests.unit.division.few_points import points, round_the_circle, written
 
 
 def test_something_that_slips_is_found_where_it_did_and_by_how_much() -> None:

@@ -9,21 +9,9 @@ import pytest
 
 from setupcheck.division import doubts
 from setupcheck.division.design import Sums, Term, design, sums_of
-from setupcheck.division.points import Points, gap_of
+from setupcheck.division.points import gap_of
 from setupcheck.division.reduction import _found
-
-
-def points(degrees: list[float], y: list[float] | None = None) -> Points:
-    """Stations in the order of time, one run, nothing said of its direction."""
-    n = len(degrees)
-    return Points(
-        np.radians(degrees), np.zeros(n) if y is None else np.array(y), np.linspace(0.0, 1.0, n), np.zeros(n, np.int32),
-        np.zeros(n, np.int8), np.arange(n, dtype=np.int32) + 2,
-    )  # fmt: skip
-
-
-def round_the_circle(stations: int, times: int) -> list[float]:
-    return [360.0 * j / stations for _ in range(times) for j in range(stations)]
+from tests.unit.division.few_points import points, round_the_circle
 
 
 @pytest.mark.parametrize(("stations", "fits"), [(7, False), (8, True)])
