@@ -6,6 +6,7 @@ SKELETON = """\
 setupcheck: 1
 title: Hub, bored
 units: mm
+confidence: 95 %
 parts:
   hub:
     material: C45

@@ -25,6 +25,7 @@ from setupcheck.jobfile.types import (
     Bound,
     Division,
     Force,
+    Hollow,
     Length,
     Read,
     Reading,
@@ -171,7 +172,7 @@ class Round(Shop):
     """A surface of revolution with a length: cylinder, bore, taper, thread.
 
     kind       what it is;  made  `stock`: the blank brings it;  roughness  with its figure, as in Rz 6.3 um
-    diameter   with its limits or as measured [mm];  hole  through its middle, where it is hollow [mm]
+    diameter   with its limits or as measured [mm];  hole  through its middle [mm], 0 where it is solid
     from, to   its two ends along the part [mm];  pitch  of a thread [mm]
     to_diameter  of a taper at `to` [mm], `diameter` then being that at `from`
     """
@@ -180,7 +181,7 @@ class Round(Shop):
     diameter: Diameter
     low: Length = Field(alias="from")
     high: Length = Field(alias="to")
-    hole: Size | None = None
+    hole: Hollow | None = None
     roughness: Roughness | None = None
     made: Literal["stock"] | None = None
     pitch: Size | None = None

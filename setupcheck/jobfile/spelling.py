@@ -58,6 +58,7 @@ _BOTH: Schema = {
 _TYPES: tuple[tuple[object, Schema], ...] = (
     (types.Length, _number("a size or position; a plain number has the file's units", "12 mm", -25, "0.5 in")),
     (types.Size, _SIZE),
+    (types.Hollow, _number("a hole, 0 where it is solid; a plain number has the file's units", "12 mm", 12.5, 0)),
     (types.Bound, _BOUND),
     (types.Division, _text("one division of an indicator", "10 um", "1 um")),
     (types.Reading, _text("a reading with its sign and unit", "6 um", "-0.004 mm")),

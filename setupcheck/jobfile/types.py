@@ -85,6 +85,13 @@ def _positive_size(given: object, info: ValidationInfo) -> float:
     return value
 
 
+def _hollow_size(given: object, info: ValidationInfo) -> float:
+    value = notation.length(scalar(given), units=units_of(info))
+    if value < 0.0:
+        raise ValueError(f"{as_listed(given)} is not a hole. Write its size, or 0 for a solid shaft")
+    return value
+
+
 def _bound(given: object, info: ValidationInfo) -> float:
     return notation.bound(scalar(given), units=units_of(info), unit_needed=True)
 
@@ -222,6 +229,8 @@ Length = Annotated[float, Read(_size)]
 """A size or position [mm]; a bare number takes the file's units."""
 Size = Annotated[float, Read(_positive_size)]
 """A length above zero [mm]."""
+Hollow = Annotated[float, Read(_hollow_size)]
+"""A hole through the middle [mm]; 0 says that there is none."""
 Bound = Annotated[float, Read(_bound)]
 """A non-negative error bound [mm]; the unit must be written."""
 Division = Annotated[float, Read(_division)]

@@ -207,7 +207,7 @@ def ring(floor: Floor, entry: HoldEntry, op: int) -> Ring | None:
     bores = [s.diameter for s in there if s.kind == "bore" and s.diameter]
     outsides = [s.diameter for s in there if s.kind in ("cylinder", "taper") and s.diameter]
     node = floor.loaded.job.parts[state.part].surfaces[state.name]
-    bores += [node.hole] if isinstance(node, Round) and node.hole is not None else []
+    bores += [node.hole] if isinstance(node, Round) and node.hole else []
     if state.kind == "bore":
         bores = [max([*bores, state.diameter])]
     else:

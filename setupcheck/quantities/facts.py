@@ -194,7 +194,7 @@ def _may_trap(floor: Floor, join: Join) -> bool:
 def _hollow(floor: Floor, part: str) -> bool:
     """Whether a part has a bore, a thread or holes that hold what it is dipped in."""
     return any(
-        s.kind in ("bore", "holes", "thread") or (isinstance(s, Round) and s.hole is not None)
+        s.kind in ("bore", "holes", "thread") or (isinstance(s, Round) and bool(s.hole))
         for s in floor.loaded.job.parts[part].surfaces.values()
     )
 

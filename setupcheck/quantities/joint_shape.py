@@ -52,7 +52,7 @@ def sections(floor: Floor, join: Join) -> tuple[Section, ...] | Open | None:
     if missing:
         return Open(missing)
     holes = [_Stretch(*_span(floor, inner.part, s), s.diameter.value) for s in _bores(floor, inner.part)]
-    if journal.hole is not None:
+    if journal.hole:
         holes.append(_Stretch(low, high, journal.hole))
     ends = sorted({low, high, *(z for s in (*outsides, *holes) for z in (s.low, s.high) if low < z < high)})
     raw = [_raw(outsides, holes, (a, b), journal.diameter.value) for a, b in itertools.pairwise(ends)]

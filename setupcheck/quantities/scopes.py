@@ -6,6 +6,7 @@ from setupcheck.jobfile.models import Deviation
 from setupcheck.jobfile.setups import Centre, Clock, Cut, Setup, Square, Stop
 from setupcheck.jobfile.truing import Trued
 from setupcheck.quantities.book import Scope
+from setupcheck.quantities.left_out import left_out
 from setupcheck.quantities.readings import readings
 from setupcheck.quantities.requirements import Stack, read_stack
 from setupcheck.quantities.shop import Floor
@@ -54,6 +55,8 @@ def scopes(floor: Floor) -> list[Scope]:
         found += _setup_scopes(floor, setup, whole)
     for read in readings(job):
         found.append(Scope("reading", read.path, read, read.path, read.op, loaded.line(read.path), (whole,)))
+    for entry in left_out(loaded):
+        found.append(Scope("entry", entry.at, entry, entry.at, entry.op, loaded.line(entry.at), (whole,)))
     seen: dict[str, int] = {}
     for i in range(len(job.require)):
         stack = read_stack(floor, i)

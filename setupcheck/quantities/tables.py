@@ -34,6 +34,7 @@ from setupcheck.quantities.joint_heat import HEAT
 from setupcheck.quantities.joint_states import IN_STATES
 from setupcheck.quantities.keyways import KEYWAYS
 from setupcheck.quantities.leaning import LEAN
+from setupcheck.quantities.left_out import LEFT_OUT
 from setupcheck.quantities.loosening import LOOSENING
 from setupcheck.quantities.marking import MARK
 from setupcheck.quantities.measure_first import MEASURE_FIRST
@@ -310,6 +311,7 @@ TABLES: tuple[Quantity, ...] = (
     *STRENGTH,
     *FIT_STATED,
     *IN_STATES,
+    *LEFT_OUT,
     *LOOSENING,
     *WITHIN,
     *GROWING,

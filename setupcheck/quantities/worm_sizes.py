@@ -21,6 +21,8 @@ SAME = 1e-3
 """Relative; two figures for one size that differ by more were not rounded apart. Source: our screening choice, as in gearing."""
 STATED = ("starts", "axial_module", "diametral_pitch", "normal_module", "quotient", "reference_diameter")
 """Sizes of a worm that are plain numbers of the job file."""
+PITCHES = ("axial_module", "diametral_pitch", "normal_module")
+"""Those of them that say the pitch."""
 TRAVELS = ("axial_pitch", "lead")
 """Sizes of a worm that may be drawn or measured."""
 PATHS = {
@@ -215,6 +217,18 @@ def _shown(floor: Floor, name: str, value: float) -> str:
     if name in ("starts", "teeth", "quotient", "diametral_pitch", "shift"):
         return f"{value:.3f}".rstrip("0").rstrip(".")
     return floor.size(value)
+
+
+def pitch_of_the_wheel(loaded: LoadedJob) -> bool:
+    """Whether the worm's pitch is known from its wheel alone: nothing is left then that could show a wrong pair.
+
+    Source: worm.closing.
+    """
+    worm, found = loaded.job.worm, _closed(loaded)
+    if worm is None or found is None or "axial_module" not in found.values:
+        return False
+    own = any(getattr(worm, name) is not None for name in (*PITCHES, *TRAVELS))
+    return not own and (worm.quotient is None or worm.reference_diameter is None)
 
 
 def contradictions(floor: Floor) -> tuple[Disagreement, ...]:

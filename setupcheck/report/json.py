@@ -8,6 +8,7 @@ from typing import TYPE_CHECKING
 from setupcheck.notation import FACTOR
 from setupcheck.quantities.book import INCH, Known, Scope
 from setupcheck.quantities.judged import Result
+from setupcheck.quantities.left_out import left_out
 from setupcheck.quantities.scopes import stack_of
 from setupcheck.report.as_json import json_text
 from setupcheck.report.backlash_read import backlash_read_as_data
@@ -18,7 +19,6 @@ from setupcheck.report.insert import inserts_as_data
 from setupcheck.report.joint import joints_as_data
 from setupcheck.report.remedies import remedy_in_words
 from setupcheck.report.rests import first_as_data, record_as_data
-from setupcheck.report.taken import taken
 from setupcheck.report.then_now import then_of
 from setupcheck.report.uncomputed import uncomputed
 from setupcheck.report.wording import clean
@@ -102,7 +102,7 @@ def as_data(found: Review) -> ReviewData:
             {"at": one.at, "line": one.line, "what": clean(f"{one.owner}: {one.what}")}
             for one in uncomputed(found.loaded)
         ],
-        "taken": [{"at": clean(one.at), "what": one.what} for one in taken(found.loaded)],
+        "taken": [{"at": clean(one.at), "what": one.what} for one in left_out(found.loaded)],
     }
 
 

@@ -47,7 +47,7 @@ class ReviewData(TypedDict):
     findings       one entry for each rule at each place it looks at, passed ones as well: fail, open, warn, waived, pass
     cautions       what to mind or to check at an operation; none of them is ever settled by a number
     not_computed   entries of the job that this version does not look at
-    taken          defaults that stand in for what the job leaves out
+    taken          defaults that stand in for what the job leaves out, each an open ENTRY-001 too
     """
 
     format: int

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterator
+from collections.abc import Iterator, Sequence
 
 from setupcheck.flow import Review
 from setupcheck.ledger.combine import TRIALS
@@ -20,10 +20,10 @@ from setupcheck.report.progress import still_to_move
 from setupcheck.report.prove_out import prove_outs
 from setupcheck.report.remedies import remedy_in_words
 from setupcheck.report.rests import how_known, measure_first, record_used, rests_in_words
-from setupcheck.report.taken import standing_on, taken, taken_in_lines
+from setupcheck.report.taken import standing_on
 from setupcheck.report.then_now import then_now
 from setupcheck.report.uncomputed import in_lines, uncomputed
-from setupcheck.report.wording import clean, finer, in_unit, title_of, unit_of, waiting_alike, wrap
+from setupcheck.report.wording import clean, finer, in_unit, is_the_entry, title_of, unit_of, waiting_alike, wrap
 from setupcheck.report.worked_out import worked_out
 from setupcheck.rulebook import VERDICTS, CautionLine, Finding
 
@@ -56,7 +56,6 @@ def as_text(found: Review, *, everything: bool = False) -> str:
         record_used(found),
         _house(found),
         _uncomputed(found),
-        _taken(found),
         dials_in_words(found, everything=everything),
         lengths_in_words(found, everything=everything),
         _cautions(found, everything),
@@ -148,13 +147,15 @@ def _findings(found: Review, everything: bool) -> Iterator[str]:
     if not shown:
         return
     yield "FINDINGS"
-    for rules, finding in waiting_alike(shown):
-        yield from _finding(found, finding, rules)
+    for rules, alike in waiting_alike(shown):
+        yield from _finding(found, alike, rules)
 
 
-def _finding(found: Review, finding: Finding, rules: str) -> Iterator[str]:
-    head = f"{finding.verdict}  {rules}  {finding.at or 'job'}"
-    yield from wrap(head + (f", line {finding.line}" if finding.line else ""), first="  ", rest="        ")
+def _finding(found: Review, alike: Sequence[Finding], rules: str) -> Iterator[str]:
+    finding = alike[0]
+    lines = [f"line {one.line}" if one.line else "" for one in alike]
+    places = [", ".join(p for p in (clean(one.at) or "job", n) if p) for one, n in zip(alike, lines, strict=True)]
+    yield from wrap(f"{finding.verdict}  {rules}  {'; '.join(places)}", first="  ", rest="        ")
     yield from wrap(clean(finding.message) + "." + _margin(finding), first="      ", rest="      ")
     if finding.verdict == "pass":
         yield from _rests_on(finding)
@@ -167,7 +168,7 @@ def _finding(found: Review, finding: Finding, rules: str) -> Iterator[str]:
     remedy = remedy_in_words(found, finding)
     if remedy and finding.verdict != "waived":
         yield from wrap(f"Do: {remedy}", first="      ", rest="          ")
-    if finding.verdict == "open" and finding.missing:
+    if finding.verdict == "open" and finding.missing and not is_the_entry(finding):
         yield from wrap(
             "Fill: " + ", ".join(finding.missing[:4]) + (" …" if len(finding.missing) > 4 else ""),
             first="      ",
@@ -321,14 +322,6 @@ def _uncomputed(found: Review) -> Iterator[str]:
         return
     yield "NOT COMPUTED BY THIS VERSION"
     for line in in_lines(stated):
-        yield from wrap(line, first="  ", rest="      ")
-
-
-def _taken(found: Review) -> Iterator[str]:
-    lines = taken_in_lines(taken(found.loaded))
-    if lines:
-        yield "TAKEN WHERE NOTHING IS WRITTEN"
-    for line in lines:
         yield from wrap(line, first="  ", rest="      ")
 
 

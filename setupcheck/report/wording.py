@@ -99,15 +99,22 @@ def as_stated(value: float, *, inches: bool) -> str:
     return next((t for t in texts if abs(float(t.split()[0]) - value * FACTOR[unit]) < 1e-6), texts[-1])
 
 
-def waiting_alike(shown: Sequence[Finding]) -> Iterator[tuple[str, Finding]]:
-    """Each finding once; open ones at one place that wait for the same thing together, with the rules that wait for it."""
+def is_the_entry(finding: Finding) -> bool:
+    """Whether what a finding waits for is the very entry that it stands at, so that its head names what to fill."""
+    return finding.verdict == "open" and finding.missing == (finding.at,)
+
+
+def waiting_alike(shown: Sequence[Finding]) -> Iterator[tuple[str, tuple[Finding, ...]]]:
+    """The findings, alike ones together with their rules: those at one place that wait for the same thing, and entries
+    that are left out where the same was taken for them."""
     groups: dict[object, list[Finding]] = {}
     for finding in shown:
-        same = (
-            (finding.at, finding.message, finding.missing) if finding.verdict == "open" else finding.rule,
-            finding.key,
-            finding.house,
-        )
+        if is_the_entry(finding):
+            same: object = (finding.rule, finding.message, finding.house)
+        elif finding.verdict == "open":
+            same = (finding.at, finding.message, finding.missing, finding.key, finding.house)
+        else:
+            same = (finding.rule, finding.key, finding.house)
         groups.setdefault(same, []).append(finding)
     for group in groups.values():
-        yield ", ".join(finding.rule for finding in group), group[0]
+        yield ", ".join(dict.fromkeys(finding.rule for finding in group)), tuple(group)

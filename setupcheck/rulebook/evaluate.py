@@ -14,6 +14,7 @@ from setupcheck.rulebook.limits import Limits, limit_of, limits_of
 from setupcheck.rulebook.messages import cannot_tell, fill, shown_pair
 from setupcheck.rulebook.needs import NAME_FACT, SURFACE_FACT, Book, Facts, Found, Missing, S, identity, read
 from setupcheck.rulebook.records import (
+    FAMILIES,
     VERDICTS,
     Answer,
     CautionLine,
@@ -71,7 +72,7 @@ def evaluate(
 
 def ordered(findings: Iterable[Finding]) -> tuple[Finding, ...]:
     """Findings by level, then operation (the job as a whole first), then rule, then instance in the order found."""
-    return tuple(sorted(findings, key=lambda f: (VERDICTS.index(f.verdict), -1 if f.op is None else f.op, f.rule)))
+    return tuple(sorted(findings, key=_in_order))
 
 
 def verdict(findings: Iterable[Finding], cautions: Iterable[CautionLine] = ()) -> Verdict:
@@ -229,12 +230,18 @@ def _message(rule: Rule, result: Verdict, facts: Facts[S], at: S, *, value: str,
     return fill(template, names)
 
 
+def _in_order(finding: Finding) -> tuple[int, bool, int, str]:
+    """Worst verdict first, then along the route; what is merely not written comes last among its equals."""
+    op = -1 if finding.op is None else finding.op
+    return VERDICTS.index(finding.verdict), finding.rule.startswith(f"{FAMILIES[-1]}-"), op, finding.rule
+
+
 def _asked(rule: Rule, result: Verdict, at: S) -> tuple[str, ...]:
     """The entry of the job that a broken rule asks for."""
     if result != "open" or not rule.asks_for:
         return ()
     path = f"{at.path}{rule.asks_for}" if rule.asks_for.startswith(".") else rule.asks_for
-    return (path.lstrip("."),)
+    return (path.strip("."),)
 
 
 def _open(missing: Missing, value: Found | None = None) -> _Told:

@@ -12,7 +12,7 @@ from setupcheck.record import record
 
 FAMILIES = (
     "DATUM", "HOLD", "ALLOW", "STACK", "DIVIDE", "TILT", "CUTTER",
-    "INSERT", "MESH", "FIT", "HEAT", "PLACE", "CLAMP", "MEASURE",
+    "INSERT", "MESH", "FIT", "HEAT", "PLACE", "CLAMP", "MEASURE", "ENTRY",
 )  # fmt: skip
 """Families of rules in the order of the job; the file of a family is its name in small letters."""
 

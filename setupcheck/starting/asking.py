@@ -6,6 +6,7 @@ import textwrap
 from collections.abc import Iterable, Sequence
 from typing import Literal
 
+from setupcheck.notation import plain
 from setupcheck.record import record
 from setupcheck.starting.answers import Answers
 from setupcheck.starting.figures import ROOM_IN_LIMITS, Figures
@@ -109,9 +110,34 @@ def _ends(low: float, high: float, measure: Measure) -> tuple[str, str]:
     return f"{least:.{digits}f} {name}", f"{high / unit + room:.{digits}f} {name}"
 
 
-def shrunk(answers: Answers, figures: Figures, *, outer: str, inner: str, stop: str, op: int, why: str) -> str:
-    """The setup that joins two parts hot.  stop  the entry that says where they meet"""
-    measure, torque = answers.measure, answers.number("torque") / 1000.0
+def carried(torque: float, along: float) -> str:
+    """What a joint must carry, as written.
+
+    torque  [N mm];  along  force along the axis [N], rounded up
+
+    >>> carried(21000.0, 53.2)
+    '{torque: 21 N m, axial_force: 60 N}'
+    """
+    return f"{{torque: {torque / 1000.0:g} N m, axial_force: {plain(nice(along, up=True))} N}}"
+
+
+def shrunk(
+    answers: Answers,
+    figures: Figures,
+    *,
+    outer: str,
+    inner: str,
+    stop: str,
+    op: int,
+    why: str,
+    along: float,
+    pushed_by: str,
+) -> str:
+    """The setup that joins two parts hot.
+
+    stop  the entry that says where they meet;  along  force along the axis [N];  pushed_by  where it comes from
+    """
+    measure, load = answers.measure, carried(answers.number("torque"), along)
     gauge = f", gauge: {measure.exact(figures.gauge)}" if figures.gauge is not None else ""
     heat = figures.heat if figures.heat is not None else 150.0
     return f"""\
@@ -127,7 +153,7 @@ def shrunk(answers: Answers, figures: Figures, *, outer: str, inner: str, stop: 
       # As hot as the tightest pair needs, with what an oven may be off. The gauge is tried in the hot bore before it goes on.
       heat: {{hub: {heat:g} degC, by: oven, oven_error: 10 degC, carry: 10 s{gauge}}}
       joint: degreased
-      must_carry: {{torque: {torque:g} N m}}
+      must_carry: {load}    # GUESS along the axis: {pushed_by}
       serves_at: [5 degC, 45 degC]   # GUESS: coldest and warmest the joint works at
 """
 

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from setupcheck.errors import SetupcheckError
 from setupcheck.starting.answers import Answers, Question, Value, in_bore, in_limit, in_size, in_torque
-from setupcheck.starting.asking import Ask, head, requirements
+from setupcheck.starting.asking import Ask, carried, head, requirements
 from setupcheck.starting.figures import PAIRED, Figures
 from setupcheck.starting.gear import bore_text
 
@@ -46,7 +46,7 @@ def _outside(text: str, answers: Answers) -> Value:
 def write(answers: Answers, figures: Figures, made_by: str) -> str:
     """The job file."""
     u, hole, out, length = answers.measure, answers.number("bore"), answers.number("outside"), answers.number("width")
-    boss = u.up(1.8 * out)
+    torque, boss = answers.number("torque"), u.up(1.8 * out)
     face, side = u.down((hole + 2.0 * out) / 3.0), u.size(u.down(0.93 * boss))
     bar, chuck = u.up(out + 4.0), -u.up(max(45.0, 0.9 * length))
     journal = figures.journal or u.with_limits(out, 0.0009 * out, 0.0010 * out)
@@ -57,8 +57,8 @@ def write(answers: Answers, figures: Figures, made_by: str) -> str:
         Ask(f"what: squareness, of: lever.side, about: bush.hole, across: {side}"),
         Ask("what: allowance, of: bush.hole@40", "at_least", "stock left for the boring cut at its thinnest"),
     )
-    if answers.number("torque") > 0.0:
-        asks += (Ask(f"what: torque, of: 20, at_least: {answers.number('torque') / 1000.0:g} N m", "stated"),)
+    if torque > 0.0:
+        asks += (Ask(f"what: torque, of: 20, at_least: {torque / 1000.0:g} N m", "stated"),)
     return f"""\
 {head(answers, OPENING, made_by)}
 # Surfaces in each part's own frame: z along the axis, 0 at the back. `made: stock` is there before the first setup.
@@ -115,7 +115,7 @@ grip: {{from: {u.size(chuck)}, to: {u.size(chuck + u.up(40.0))}}}, runout: {{dev
       fit_error: {u.error(0.010)}                   # GUESS
       lead_in: {u.size(u.up(2.0))}                       # a chamfer or taper that lets the bush find its way
       joint: degreased
-      must_carry: {{torque: {answers.number("torque") / 1000.0:g} N m}}
+      must_carry: {carried(torque, 2.0 * torque / hole)}    # GUESS along the axis: a shaft that slides drags no harder
       serves_at: [5 degC, 45 degC]   # GUESS: coldest and warmest the joint works at
   - op: 40          # bored in place, trued on the boss in two planes: what the pressing has leaned is gone
     machine: lathe-M

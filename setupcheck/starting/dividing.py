@@ -11,6 +11,8 @@ RATIO = 40
 """Turns of the crank for one of the work. Source: common practice, most heads."""
 TABLE_RATIO = 90
 """Turns of the handwheel of a rotary table. Source: common practice."""
+CLAMP, TABLE_CLAMP = '5"', '10"'
+"""What locking the spindle of a head, or a table, turns it. Source: our screening choice, of the order of one setting."""
 
 
 def division(count: int, name: str, extra: str = "") -> tuple[str, str]:
@@ -19,7 +21,7 @@ def division(count: int, name: str, extra: str = "") -> tuple[str, str]:
     extra  more keys of the machine
 
     >>> division(72, "head")[1]
-    'divide: {by: hole-circle, circle: 18}    # 5/9 turn of the crank is 10 holes of 18; typical errors stand in for its own'
+    'divide: {by: hole-circle, circle: 18, clamp: 5"}    # 5/9 turn of the crank is 10 holes of 18; clamp is GUESS, rest typical'
     """
     ratio, fits = RATIO, circles_that_fit(RATIO, count, USUAL_CIRCLES)
     if not fits:
@@ -29,14 +31,15 @@ def division(count: int, name: str, extra: str = "") -> tuple[str, str]:
         machine = f"{name}: {{kind: rotary-table, worm_ratio: {ratio}{extra}, axis_runout: {{device: rotary-table}}}}"
         return (
             machine,
-            f"divide: {{by: rotary-table}}    # no usual hole circle closes on {count}: each angle is set by its scale",
+            f"divide: {{by: rotary-table, clamp: {TABLE_CLAMP}}}    "
+            f"# no usual hole circle closes on {count}: each angle is set by its scale; clamp is GUESS, rest typical",
         )
     circle = min(fits)
     turns = f"{ratio * circle // count} holes of {circle}"
     head = f"{name}: {{kind: dividing-head, worm_ratio: {ratio}{extra}, axis_runout: {{device: dividing-head}}}}"
     return head, (
-        f"divide: {{by: hole-circle, circle: {circle}}}    # {_turn(ratio, count)} turn of the crank is {turns}; "
-        "typical errors stand in for its own"
+        f"divide: {{by: hole-circle, circle: {circle}, clamp: {CLAMP}}}    "
+        f"# {_turn(ratio, count)} turn of the crank is {turns}; clamp is GUESS, rest typical"
     )
 
 

@@ -115,7 +115,7 @@ grip: {{from: {u.size(chuck)}, to: {u.size(-u.up(4.0))}}}, runout: {{device: thr
     machine: lathe-C
     looks_at_tool: -z
     hold:
-      centre: {{on: bore, by: expanding-mandrel, runout: {{device: expanding-mandrel}}}}
+      centre: {{on: bore, by: expanding-mandrel, at: {u.size(0.5 * b)}, runout: {{device: expanding-mandrel}}}}
       square: {{on: front, by: collar, face_runout: {u.error(0.008)}, across: {u.size(0.8 * outside)}}}    # GUESS
       stop:   {{on: front, error: {u.error(0.020)}}}    # GUESS
     cut: {{back: {{error: {u.error(0.020)}, removes: [bar]}}}}

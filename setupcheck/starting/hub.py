@@ -16,6 +16,9 @@ OPENING = (
 THINNEST = 1.3
 """Outside over bore that a hub has at the least. Source: our screening choice; the review judges its strength."""
 
+RIM_FRICTION = 0.15
+"""Friction of a coupling's teeth or jaws as a shaft shifts along its axis. Source: from memory, greased steel."""
+
 LEAST_SHRUNK = 25.0
 """Smallest bore that is proposed to be shrunk on [mm]. Source: our screening choice; below it the heat gets too much."""
 
@@ -69,7 +72,14 @@ def write(answers: Answers, figures: Figures, made_by: str) -> str:
     stop = f"{{on: hub.back, against: shaft.shoulder, error: {u.error(0.010)}}}"
     ends = {"outer": "hub.bore", "inner": "shaft.seat", "stop": stop, "op": 50}
     joined = (
-        shrunk(answers, figures, why="hub from the oven onto the cold shaft, down to the shoulder", **ends)  # type: ignore[arg-type]
+        shrunk(
+            answers,
+            figures,
+            why="hub from the oven onto the cold shaft, down to the shoulder",
+            along=RIM_FRICTION * 2.0 * answers.number("torque") / rim,  # as it shifts, held at the rim
+            pushed_by=f"what the other half drags at the rim, friction {RIM_FRICTION:g}",
+            **ends,  # type: ignore[arg-type]
+        )
         if answers.word("join") == "shrink"
         else slid(answers, **ends)  # type: ignore[arg-type]
     )
@@ -90,7 +100,8 @@ to: {u.size(length + u.up(4.0) + stub)}, made: stock}}
   shaft:
     material: 42CrMo4          # GUESS
     surfaces:
-      seat:     {{kind: cylinder, diameter: {journal}, from: 0, to: {u.size(length)}, roughness: Rz 3 um}}
+      seat:     {{kind: cylinder, diameter: {journal}, \
+from: 0, to: {u.size(length)}, hole: 0, roughness: Rz 3 um}}    # GUESS: solid
       shoulder: {{kind: face, at: 0, facing: +z, diameter: {u.size(shoulder)}}}
       bearings: {{kind: cylinder, diameter: {u.size(u.down(shoulder - 1.0))}, from: {u.size(-u.up(3.0 * bore))}, \
 to: {u.size(-u.up(0.25 * bore))}}}

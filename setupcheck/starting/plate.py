@@ -5,7 +5,7 @@ from __future__ import annotations
 from setupcheck.errors import SetupcheckError
 from setupcheck.starting.answers import Answers, Question, Value, in_bore, in_limit, in_size, whole
 from setupcheck.starting.asking import Ask, head, requirements
-from setupcheck.starting.dividing import TABLE_RATIO
+from setupcheck.starting.dividing import TABLE_CLAMP, TABLE_RATIO
 from setupcheck.starting.figures import Figures
 from setupcheck.starting.gear import bore_text
 
@@ -125,10 +125,10 @@ grip: {{from: {u.size(-grip - 2.0)}, to: {u.size(-u.up(1.0))}}}, runout: {{devic
     machine: table-F
     looks_at_tool: +z
     hold:
-      centre: {{on: bore, by: indicator, runout: {{device: indicator}}}}
+      centre: {{on: bore, by: indicator, at: {u.size(0.5 * thick)}, runout: {{device: indicator}}}}
       square: {{on: back, by: table, face_runout: {u.error(0.010)}, across: {across}}}    # GUESS
       stop:   {{on: back, error: {u.error(0.025)}}}    # GUESS
-    divide: {{by: rotary-table}}     # typical errors stand in for its own
+    divide: {{by: rotary-table, clamp: {TABLE_CLAMP}}}    # clamp is GUESS, rest typical
     cut:
       holes:
         cutter: reamer

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from setupcheck.starting.answers import Answers, Question, in_limit, in_size
-from setupcheck.starting.asking import Ask, head, requirements
+from setupcheck.starting.asking import Ask, carried, head, requirements
 from setupcheck.starting.figures import Figures
 
 OPENING = (
@@ -69,7 +69,7 @@ to: {u.size(seat_end + 1.0)}, made: stock}}
       # Ring and seat are measured and paired. Until then narrow spans stand for both, GUESS; afterwards write
       # {{nominal: {u.exact(d)}, measured: …, uncertainty: {u.error(SPREAD)}}}.
       seat:         {{kind: cylinder, diameter: {u.with_limits(d, 0.7 * paired - SPREAD, 0.7 * paired + SPREAD)}, \
-from: 0, to: {u.size(seat_end)}, roughness: Rz 1.6 um}}
+from: 0, to: {u.size(seat_end)}, hole: 0, roughness: Rz 1.6 um}}    # GUESS: solid
       shoulder:     {{kind: face, at: 0, facing: +z, diameter: {u.size(shoulder)}}}
       body:         {{kind: cylinder, diameter: {u.size(body)}, from: {u.size(back)}, to: 0}}
       rear:         {{kind: cylinder, diameter: {u.size(rear)}, from: {u.size(far)}, to: {u.size(back)}}}
@@ -139,7 +139,7 @@ setups:
         {{hub: 117 degC, by: oven, oven_error: 3 degC, read_by: contact-probe, carry: 5 s,
          shaft: -40 degC, cold_by: freezer, cold_error: 2 K}}
       joint: oiled                   # a film against rust: this joint has no torque to carry
-      must_carry: {{torque: 0 N m}}
+      must_carry: {carried(0.0, 0.0)}    # GUESS: thrust goes onto the shoulder, none the other way
       serves_at: [15 degC, 60 degC]  # GUESS: coldest and warmest it works at
 
 # Where the ring works: about the axis of the other bearing's seat.

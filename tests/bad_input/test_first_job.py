@@ -10,6 +10,7 @@ from setupcheck.flow import review
 from setupcheck.jobfile.examples import SKELETON
 from setupcheck.jobfile.reading import read_job_text
 from setupcheck.jobfile.setups import Job, Join
+from setupcheck.quantities.left_out import left_out
 from tests.bad_input.ring import JOINED, RING, refused, spoilt, told
 
 
@@ -18,7 +19,9 @@ def says(text: str) -> list[str]:
 
 
 def test_the_job_shown_for_an_empty_file_passes_as_it_stands_and_indented_as_it_is_printed() -> None:
-    assert "pass" == review(read_job_text(SKELETON, "job.yaml")).verdict
+    found = review(read_job_text(SKELETON, "job.yaml"))
+    assert "pass" == found.verdict
+    assert () == left_out(found.loaded)
     assert read_job_text(textwrap.indent(SKELETON, "    "), "job.yaml").job.title == "Hub, bored"
 
 
@@ -47,8 +50,8 @@ SETUPS = "setups: and under it `- op: 10`, with machine, looks_at_tool, hold and
 def test_a_file_without_setups_is_told_their_shape_and_a_stack_of_bought_parts_needs_none() -> None:
     begin, end = SKELETON[: SKELETON.index("setups:")], SKELETON[SKELETON.index("require:") :]
     assert [f"1:1 setups | 'setups' is missing here. Write {SETUPS}"] == says(begin + end)
-    assert [f"14:1 setups | nothing is written here. Write {SETUPS}"] == says(f"{begin}setups:\n{end}")
-    assert [f"14:1 setups | no setup is written here. Write {SETUPS}"] == says(f"{begin}setups: []\n{end}")
+    assert [f"15:1 setups | nothing is written here. Write {SETUPS}"] == says(f"{begin}setups:\n{end}")
+    assert [f"15:1 setups | no setup is written here. Write {SETUPS}"] == says(f"{begin}setups: []\n{end}")
     given = "    given: [{of: bore, about: rim, runout: 3 um}]\n"
     assert read_job_text(begin.replace("machines:\n", f"{given}machines:\n") + end, "job.yaml")
 
@@ -91,14 +94,14 @@ def test_setups_written_by_their_numbers_are_told_once_and_read_on() -> None:
 def test_one_setup_without_its_dash_and_one_requirement_without_its_own_are_told_and_read_on() -> None:
     text = SKELETON.replace("  - op: 10", "    op: 10").replace("by: three-jaw", "by: four-jaws")
     assert [
-        "14:1 setups | setups is a list. Write each entry under it with a dash: `- op: 10`",
-        "19:29 setups.10.hold.centre.by | 'four-jaws' is not known here. Did you mean four-jaw?",
+        "15:1 setups | setups is a list. Write each entry under it with a dash: `- op: 10`",
+        "20:29 setups.10.hold.centre.by | 'four-jaws' is not known here. Did you mean four-jaw?",
     ] == says(text)
     asked = "  run-out: {of: hub.bore, about: hub.rum, at_most: 10 um}\n"
     assert [
-        "22:1 require | require is a list. "
+        "23:1 require | require is a list. "
         "Write each entry under it with a dash: `- {what: run-out, of: wheel.bore, at_most: 20 um}`",
-        "23:34 require[1].about | part 'hub' has no surface 'rum'. Did you mean hub.rim?",
+        "24:34 require[1].about | part 'hub' has no surface 'rum'. Did you mean hub.rim?",
     ] == says(SKELETON[: SKELETON.index("  - {what")] + asked)
 
 
@@ -112,14 +115,14 @@ def test_names_written_as_a_list_are_told_once_for_each_list_and_read_on() -> No
         .replace("cut: {rim: {}, bore: {}}", "cut: [rim, bore]")
     )
     assert [
-        "4:1 parts | parts is a map, not a list. Write each name, then a colon and its entry, as in hub: {…}",
-        "7:5 parts.hub.surfaces | surfaces is a map, not a list. "
+        "5:1 parts | parts is a map, not a list. Write each name, then a colon and its entry, as in hub: {…}",
+        "8:5 parts.hub.surfaces | surfaces is a map, not a list. "
         "Write each name, then a colon and its entry, as in bar: {…}",
-        "11:38 parts.hub.surfaces.bore.diameter | a bore of 83 mm leaves nothing of rim, "
+        "12:38 parts.hub.surfaces.bore.diameter | a bore of 83 mm leaves nothing of rim, "
         "which is 80 mm from 0 mm to 20 mm. Write a smaller bore, or removes: [rim] at the cut that takes it away",
-        "12:1 machines | machines is a map, not a list. "
+        "13:1 machines | machines is a map, not a list. "
         "Write each name, then a colon and its entry, as in lathe-A: {…}",
-        "21:5 setups.10.cut | cut is a map, not a list. Write the surface, then a colon and its entry, as in rim: {}",
+        "22:5 setups.10.cut | cut is a map, not a list. Write the surface, then a colon and its entry, as in rim: {}",
     ] == says(text)
 
 
@@ -132,7 +135,7 @@ def test_keys_of_an_empty_section_at_the_left_margin_are_read_as_its_own() -> No
         "37:7 worm.hand | 'rigt' is not known here. Did you mean right?",
     ] == says(spoilt("require:\n", "worm:\nstarts: 1\nhand: rigt\nrequire:\n"))
     assert [
-        "5:1 parts | hub belongs to parts. Indent it under parts:",
+        "6:1 parts | hub belongs to parts. Indent it under parts:",
     ] == says(SKELETON.replace("  hub:\n", "hub:\n"))
 
 
@@ -202,5 +205,5 @@ def test_a_housing_is_the_name_or_the_number_of_a_material(material: str) -> Non
 )
 def test_setups_as_a_map_that_holds_nothing(setups: str, expected: list[str]) -> None:
     first, *others = says(f"{SKELETON[: SKELETON.index('setups:')]}setups: {setups}\n")
-    assert "14:1 setups | setups is a list. Write each entry under it with a dash: `- op: 10`" == first
+    assert "15:1 setups | setups is a list. Write each entry under it with a dash: `- op: 10`" == first
     assert expected == [line.partition(" ")[2] for line in others]

@@ -11,7 +11,6 @@ from setupcheck.errors import JobError
 from setupcheck.flow import Review, review
 from setupcheck.jobfile.changing import Change, changed
 from setupcheck.jobfile.reading import LoadedJob
-from setupcheck.report.taken import taken
 from tests.catch.making import good, without
 from tests.catch.numbers import WAYS, Number, numbers, spoilt
 
@@ -26,14 +25,12 @@ class Spoilt:
     """What became of a job with one number spoilt.
 
     passes  the review says pass: of every finding, and of the job
-    taken   the review tells, at this very entry, what it took instead
     """
 
     number: Number
     way: str
     how: str
     passes: bool
-    taken: bool = False
 
 
 def every(jobs: Iterable[str]) -> list[tuple[Number, str]]:
@@ -57,8 +54,7 @@ def spoil(asked: tuple[Number, str]) -> Spoilt:
     findings, figures = _seen(found)
     was_findings, was_figures = _seen_in_good(number.job)
     how = SPEAKS if findings != was_findings else MOVES if figures != was_figures else SILENT
-    told = any(one.at == number.path for one in taken(found.loaded))
-    return Spoilt(number, way, how, found.verdict == "pass", told)
+    return Spoilt(number, way, how, found.verdict == "pass")
 
 
 def _made(number: Number, text: str) -> LoadedJob:
@@ -89,11 +85,6 @@ def unused(found: Sequence[Spoilt]) -> set[Number]:
     return silent - {one.number for one in found if one.way != "removed" and one.how in (SPEAKS, MOVES)}
 
 
-def removed_in_silence(found: Sequence[Spoilt]) -> list[Spoilt]:
-    """Numbers that something rests on, taken out, and the review passes all the same and tells no default for them."""
-    return [one for one in removed_and_passed(found) if not one.taken]
-
-
 def removed_and_passed(found: Sequence[Spoilt]) -> list[Spoilt]:
     """Numbers that something rests on, taken out, and the review passes all the same."""
     idle = unused(found)
@@ -110,14 +101,11 @@ def told(found: Sequence[Spoilt]) -> list[str]:
         shares = (sum(counts[how] for how in NOTICED), counts[MOVES], counts[SILENT])
         lines.append(f"  {way:<10}{tries:>6}" + "".join(f"{100.0 * n / max(tries, 1):>7.1f} %" for n in shares))
     lines.append(f"  nothing judged rests on {len(unused(found))} of them")
-    passed, silent = removed_and_passed(found), removed_in_silence(found)
-    lines.append(
-        f"  removed and passed: {len(passed)}; {len(passed) - len(silent)} with the default told, {len(silent)} without"
-    )
+    lines.append(f"  removed and passed: {len(removed_and_passed(found))}")
     return lines
 
 
 def listed(found: Sequence[Spoilt]) -> list[str]:
-    """Removals that pass in silence, and what nothing rests on."""
-    lines = [f"removed, passes: {one.number.told()} ({one.how})" for one in removed_in_silence(found)]
+    """Removals that pass, and what nothing rests on."""
+    lines = [f"removed, passes: {one.number.told()} ({one.how})" for one in removed_and_passed(found)]
     return lines + [f"nothing rests on: {one.told()}" for one in sorted(unused(found), key=Number.told)]

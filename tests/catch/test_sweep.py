@@ -5,7 +5,6 @@ from __future__ import annotations
 from functools import cache
 
 from setupcheck.flow import review
-from setupcheck.report.text import how_far
 from tests.catch import sweep
 from tests.catch.making import good, without
 from tests.catch.numbers import WAYS
@@ -14,9 +13,6 @@ from tests.catch.table import good_jobs
 
 EACH = 24
 """Of all numbers in their order, one in so many is spoilt here; `python -m tests.catch` spoils them all."""
-
-TOLD_ELSEWHERE = ("worm.axial_module",)
-"""Entries that another one of the same file says again: taken out, nothing is missing. Here the worm's other sizes."""
 
 
 @cache
@@ -32,22 +28,22 @@ def test_the_sample_reaches_every_way_and_many_jobs() -> None:
     assert len({one.number.job for one in sample()}) >= 0.8 * len(good_jobs())
 
 
-def test_a_number_taken_out_is_never_a_plain_pass() -> None:
-    """Where the review still says pass, it says on how many defaults, and names this entry among them."""
-    passed = sweep.removed_in_silence(sample())
-    assert [one.number.told() for one in passed if one.number.path not in TOLD_ELSEWHERE] == []
+def test_a_number_taken_out_is_never_a_pass() -> None:
+    assert [one.number.told() for one in sweep.removed_and_passed(sample())] == []
 
 
-def test_a_pass_with_something_taken_says_so_in_its_first_line() -> None:
-    whole, without_room = good("bearing-ring-seat"), without(good("bearing-ring-seat"), ["room"])
-    now, then = (how_far(review(job)) for job in (whole, without_room))
-    assert (now, then) == ("on 2 defaults", "on 3 defaults")
+def test_an_entry_that_is_left_out_is_open_and_names_what_stands_in_for_it() -> None:
+    found = review(without(good("bearing-ring-seat"), ["room"]))
+    told = [(f.rule, f.at, f.verdict, f.message) for f in found.evaluation.findings if f.rule == "ENTRY-001"]
+    assert told == [("ENTRY-001", "room", "open", "not written; taken instead: the shop at 20 degC")]
+    assert found.verdict == "open"
 
 
-def test_what_is_taken_out_and_has_no_default_would_be_told() -> None:
+def test_what_is_taken_out_and_passes_would_be_told() -> None:
     number = next(one.number for one in sample() if one.how == MOVES)
-    silent = [Spoilt(number, "doubled", MOVES, True), Spoilt(number, "removed", SILENT, True)]
-    assert [one.way for one in sweep.removed_in_silence(silent)] == ["removed"]
+    passed = [Spoilt(number, "doubled", MOVES, True), Spoilt(number, "removed", SILENT, True)]
+    assert [one.way for one in sweep.removed_and_passed(passed)] == ["removed"]
+    assert sweep.listed(passed) == [f"removed, passes: {number.told()} ({SILENT})"]
 
 
 def test_a_number_of_the_wrong_sign_is_noticed() -> None:

@@ -28,8 +28,8 @@ ROOT = Path(__file__).resolve().parents[2]
 HERE = Path(__file__).resolve().parent
 WHEEL = (ROOT / "jobs" / "rotator-worm-wheel.yaml").read_text(encoding="utf-8")
 SHIMMED = WHEEL.replace(
-    "centre: {on: hub, by: four-jaw, runout: {at_most: 6 um, measured: 4 um, uncertainty: 1 um}}",
-    "centre: {on: rim, by: shimmed-jaws, runout: 100 um}",
+    "centre: {on: hub, by: four-jaw, at: 23, runout: {at_most: 6 um, measured: 4 um, uncertainty: 1 um}}",
+    "centre: {on: rim, by: shimmed-jaws, at: 12, runout: 100 um}",
 )
 EXCERPTS_IN = ("README.md", "docs/what-comes-out.md")
 MISTAKES = (

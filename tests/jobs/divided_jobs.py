@@ -12,19 +12,20 @@ def disc(divide: str, count: int) -> str:
 setupcheck: 1
 title: A disc divided in some way
 units: mm
+confidence: 95 %
 machines: {{head-A: {{kind: dividing-head, worm_ratio: 40, axis_runout: 0 um}}}}
 parts:
   disc:
     surfaces:
       bore:  {{kind: bore, diameter: 40, from: 0, to: 10, made: stock}}
       face:  {{kind: face, at: 0, facing: -z, diameter: 150, made: stock}}
-      teeth: {{kind: teeth, count: {count}, on_circle: {2.0 * RADIUS:g}, at: 5, pressure_angle: 20 deg}}
+      teeth: {{kind: teeth, count: {count}, on_circle: {2.0 * RADIUS:g}, at: 5, width: 10, pressure_angle: 20 deg}}
 setups:
   - op: 10
     machine: head-A
     looks_at_tool: +z
     hold:
-      centre: {{on: bore, by: expanding-mandrel, runout: 0 um}}
+      centre: {{on: bore, by: expanding-mandrel, at: 5, runout: 0 um}}
       square: {{on: face, by: flange, face_runout: 0 um, across: 100}}
       stop:   {{on: face, error: 0 um}}
     divide: {divide}

@@ -125,7 +125,10 @@ def test_the_largest_interference_that_is_told_stays_elastic() -> None:
 
 
 def test_two_rules_that_exclude_each_other_say_so() -> None:
-    text = job((JOURNAL, "diameter: 32.040 ±0.003"), ("must_carry: {torque: 40 N m}", "must_carry: {torque: 250 N m}"))
+    text = job(
+        (JOURNAL, "diameter: 32.040 ±0.003"),
+        ("must_carry: {torque: 40 N m, axial_force: 0 N}", "must_carry: {torque: 250 N m, axial_force: 0 N}"),
+    )
     grip = broken(text, "FIT-003")
     (allowed,) = said(
         r", but FIT-004 allows at most ([\d.]+) um: lengthen the seat, thicken the wall, or add a key", grip
@@ -137,7 +140,10 @@ def test_two_rules_that_exclude_each_other_say_so() -> None:
 
 
 def test_two_rules_that_closer_limits_bring_together_name_each_other() -> None:
-    text = job((JOURNAL, "diameter: 32.030 ±0.014"), ("must_carry: {torque: 40 N m}", "must_carry: {torque: 60 N m}"))
+    text = job(
+        (JOURNAL, "diameter: 32.030 ±0.014"),
+        ("must_carry: {torque: 40 N m, axial_force: 0 N}", "must_carry: {torque: 60 N m, axial_force: 0 N}"),
+    )
     grip, slack = broken(text, "FIT-003"), broken(text, "FIT-004")
     (needed,) = said(r"to ([\d.]+) um \(", grip)
     (allowed,) = said(r"down to ([\d.]+) um \(", slack)

@@ -43,8 +43,8 @@ CASES = {
         None, 40, stations(20), "800 holes = 40 turns of the crank", "runout: {at_most: 4 um, device", "runout: {at_most: 4 um, measured: 2 um, uncertainty: 0.4 um, device",
     ),
     "index-plate": Case(
-        "plate.holes", 24, stations(24), "24 times 15 deg = 360 deg", "by: indicator, runout: 0.2 thou",
-        "by: indicator, runout: {at_most: 0.2 thou, measured: 0.1 thou, uncertainty: 0.02 thou}",
+        "plate.holes", 24, stations(24), "24 times 15 deg = 360 deg", "by: indicator, at: 0.3125, runout: 0.2 thou",
+        "by: indicator, at: 0.3125, runout: {at_most: 0.2 thou, measured: 0.1 thou, uncertainty: 0.02 thou}",
     ),
     "rotator-worm-wheel": Case(
         None, 72, stations(24, 8, (0.0, 120.0)), "720 holes = 40 turns of the crank", "rests: pushed, runout: 3 um",

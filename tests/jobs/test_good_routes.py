@@ -136,8 +136,8 @@ TRY_IT = {  # what the head of each job says to try, and the rules that speak th
     "bevel-pinion-blank": ("blocks: 79.319", "blocks: 79.600", {"TILT-007"}),
     "sprocket": ("front: {error: 40 um,", "front: {error: 0.1 mm,", {"STACK-001", "STACK-002"}),
     "rotator-worm-wheel": (
-        "centre: {on: hub, by: spigot,",
-        "centre: {on: rim, by: spigot,",
+        "centre: {on: hub, by: spigot, at: 23,",
+        "centre: {on: rim, by: spigot, at: 12,",
         {"MESH-006", "STACK-001", "STACK-002"},
     ),
 }

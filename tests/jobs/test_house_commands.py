@@ -36,7 +36,7 @@ ASKED_OF_DEVICES = (
     ("tilt: 3deg 10' 47\", uncertainty: 1', ", "tilt: 3deg 10' 47\", "),
     ("depth: 4.4, depth_error: 10 um", "depth: 4.4, depth_error: {device: readout-5um}"),
     ("runout: {at_most: 4 um, indicator: 1 um}", "runout: {device: four-jaw}"),
-    (', wheel: {once_per_turn: ±12"}, worm: {once_per_crank: ±4"}, setting: 2"}', "}"),
+    (', wheel: {once_per_turn: ±12"}, worm: {once_per_crank: ±4"}, setting: 2", clamp: 0"}', "}"),
 )
 """What the shipped job states, and the same left to devices."""
 

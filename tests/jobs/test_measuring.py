@@ -63,17 +63,17 @@ setups:
     machine: head-B
     looks_at_tool: -z
     hold:
-      centre: {on: hub, by: spigot, clearance: [2 um, 8 um], rests: pushed, runout: 3 um}
+      centre: {on: hub, by: spigot, at: 23, clearance: [2 um, 8 um], rests: pushed, runout: 3 um}
       square: {on: seat, by: flange, face_runout: 4 um, across: 100}
       stop:   {on: seat, error: 10 um}
     head:   {tilt: 3deg 34' 35", uncertainty: 2', leans: nose-down, mid_plane: {found: after-tilt, error: 15 um}}
-    divide: {by: hole-circle, circle: 18, setting: 2"}
+    divide: {by: hole-circle, circle: 18, setting: 2", clamp: 0"}
     cut:    {teeth: {cutter: fly, depth: 3.3, passes: [2.0, 1.0, 0.3]}}
   - op: 50
     machine: lathe-A
     looks_at_tool: -z
     hold:
-      centre: {on: hub, by: four-jaw, runout: {at_most: 6 um, measured: 4 um, uncertainty: 1 um}}
+      centre: {on: hub, by: four-jaw, at: 23, runout: {at_most: 6 um, measured: 4 um, uncertainty: 1 um}}
       square: {on: seat, by: parallels, face_runout: 4 um, across: 100}
       stop:   {on: seat, error: 5 um}
     cut: {bore: {}, back: {error: 8 um}}

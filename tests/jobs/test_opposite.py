@@ -91,12 +91,12 @@ def test_one_direction_alone_is_nothing_to_set_against() -> None:
     assert not [f for f in judged(changed((TRUED, HIGH))).evaluation.findings if f.rule == "PLACE-002"]
 
 
-HELD = "centre: {on: hub, by: spigot, clearance: [2 um, 8 um], rests: pushed, runout: 3 um}"
+HELD = "centre: {on: hub, by: spigot, at: 23, clearance: [2 um, 8 um], rests: pushed, runout: 3 um}"
 
 
 def chained(arbor: str, nose: str) -> str:
     return changed(
-        (HELD, f"centre: {{on: hub, by: spigot, clearance: [2 um, 8 um], runout: {arbor}, through: [{{by: spindle, runout: {nose}}}]}}")
+        (HELD, f"centre: {{on: hub, by: spigot, at: 23, clearance: [2 um, 8 um], runout: {arbor}, through: [{{by: spindle, runout: {nose}}}]}}")
     )  # fmt: skip
 
 

@@ -9,7 +9,7 @@ import pytest
 from setupcheck.quantities.contents import material_family
 from tests.unit.report.sample import PLATE, WHEEL, changed, reviewed
 
-HUB = "must_carry: {torque: 40 N m}"
+HUB = "must_carry: {torque: 40 N m, axial_force: 0 N}"
 
 
 def rules(text: str, verdict: str) -> set[str]:

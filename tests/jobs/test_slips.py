@@ -38,7 +38,7 @@ SLIPS: dict[tuple[str, str], tuple[Slip, ...]] = {
         Slip(
             GEAR,
             20,
-            "centre: {on: bore, by: expanding-mandrel, runout: 10 um}",
+            "centre: {on: bore, by: expanding-mandrel, at: 8, runout: 10 um}",
             "centre: {on: teeth, by: expanding-mandrel, runout: 10 um}",
         ),
     ),
@@ -52,8 +52,8 @@ SLIPS: dict[tuple[str, str], tuple[Slip, ...]] = {
         Slip(
             PLATE,
             30,
-            "centre: {on: bore, by: indicator, runout: 0.2 thou}",
-            "centre: {on: rough, by: indicator, runout: 0.2 thou}",
+            "centre: {on: bore, by: indicator, at: 0.3125, runout: 0.2 thou}",
+            "centre: {on: rough, by: indicator, at: 0.3125, runout: 0.2 thou}",
         ),
     ),
     ("DATUM-003", "set on a face that is only roughed"): (
@@ -90,7 +90,7 @@ SLIPS: dict[tuple[str, str], tuple[Slip, ...]] = {
     ),
     ("HOLD-003", "the error of the hold is left out"): (
         Slip(WHEEL, 40, "rests: pushed, runout: 3 um}", "rests: pushed}"),
-        Slip(GEAR, 20, "by: expanding-mandrel, runout: 10 um}", "by: expanding-mandrel}"),
+        Slip(GEAR, 20, "by: expanding-mandrel, at: 8, runout: 10 um}", "by: expanding-mandrel, at: 8}"),
     ),
     ("HOLD-004", "a device named and nothing said of it"): (
         Slip(
@@ -102,8 +102,8 @@ SLIPS: dict[tuple[str, str], tuple[Slip, ...]] = {
         Slip(
             GEAR,
             20,
-            "by: expanding-mandrel, runout: 10 um}",
-            "by: expanding-mandrel, runout: {device: expanding-mandrel}}",
+            "by: expanding-mandrel, at: 8, runout: 10 um}",
+            "by: expanding-mandrel, at: 8, runout: {device: expanding-mandrel}}",
         ),
     ),
     ("HOLD-005", "two centring planes too close together"): (
@@ -125,7 +125,7 @@ SLIPS: dict[tuple[str, str], tuple[Slip, ...]] = {
         Slip(
             PLATE,
             30,
-            "centre: {on: bore, by: indicator, runout: 0.2 thou}\n      square: {on: back, by: table, face_runout: "
+            "centre: {on: bore, by: indicator, at: 0.3125, runout: 0.2 thou}\n      square: {on: back, by: table, face_runout: "
             "0.3 thou, across: 5}\n      stop:   {on: back, error: 1 thou}\n    divide",
             "centre: {on: bore, by: spigot, clearance: [0.2 thou, 2 thou], runout: 0.2 thou}\n      square: {on: back, by: "
             "table, face_runout: 0.3 thou, across: 5}\n      stop:   {on: back, error: 1 thou}\n    divide",
@@ -136,8 +136,8 @@ SLIPS: dict[tuple[str, str], tuple[Slip, ...]] = {
         Slip(
             GEAR,
             20,
-            "by: expanding-mandrel, runout: 10 um}",
-            "by: expanding-mandrel, runout: {at_most: 10 um, measured: 14 um, uncertainty: 2 um}}",
+            "by: expanding-mandrel, at: 8, runout: 10 um}",
+            "by: expanding-mandrel, at: 8, runout: {at_most: 10 um, measured: 14 um, uncertainty: 2 um}}",
         ),
     ),
     ("HOLD-008", "a jaw named for the high spot, and no mark on the part"): (
@@ -145,7 +145,7 @@ SLIPS: dict[tuple[str, str], tuple[Slip, ...]] = {
         Slip(
             PLATE,
             20,
-            "by: soft-jaws, runout: 1 thou,",
+            "by: soft-jaws, at: 0.35, runout: 1 thou,",
             "by: soft-jaws, runout: {measured: 1 thou, uncertainty: 0.2 thou, high_at: jaw 3},",
         ),
     ),
@@ -211,28 +211,33 @@ SLIPS: dict[tuple[str, str], tuple[Slip, ...]] = {
         Slip(
             GEAR,
             20,
-            "by: expanding-mandrel, runout: 10 um}",
-            "by: expanding-mandrel, runout: {at_most: 10 um, measured: 4 um, uncertainty: 5 um}}",
+            "by: expanding-mandrel, at: 8, runout: 10 um}",
+            "by: expanding-mandrel, at: 8, runout: {at_most: 10 um, measured: 4 um, uncertainty: 5 um}}",
         ),
     ),
     ("MEASURE-003", "jaws over shims that nobody measured"): (
         Slip(WHEEL, 20, "by: soft-jaws, at: 12, runout: 20 um}", "by: shimmed-jaws, at: 12, runout: 20 um}"),
-        Slip(PLATE, 20, "by: soft-jaws, runout: 1 thou,", "by: shimmed-jaws, runout: {device: shimmed-jaws},"),
+        Slip(
+            PLATE,
+            20,
+            "by: soft-jaws, at: 0.35, runout: 1 thou,",
+            "by: shimmed-jaws, at: 0.35, runout: {device: shimmed-jaws},",
+        ),
     ),
     ("MEASURE-007", "an indicator too coarse for the plan"): (
         Slip(WHEEL, 40, "rests: pushed, runout: 3 um}", "rests: pushed, runout: {at_most: 3 um, indicator: 10 um}}"),
         Slip(
             PLATE,
             30,
-            "by: indicator, runout: 0.2 thou}",
-            "by: indicator, runout: {at_most: 0.2 thou, indicator: 0.5 thou}}",
+            "by: indicator, at: 0.3125, runout: 0.2 thou}",
+            "by: indicator, at: 0.3125, runout: {at_most: 0.2 thou, indicator: 0.5 thou}}",
         ),
     ),
     ("DIVIDE-003", "a way of dividing without a typical error, and none stated"): (
         Slip(
             WHEEL,
             40,
-            'by: hole-circle, circle: 18, wheel: {once_per_turn: ±10"}, worm: {once_per_crank: ±4"}, setting: 2"}',
+            'by: hole-circle, circle: 18, wheel: {once_per_turn: ±10"}, worm: {once_per_crank: ±4"}, setting: 2", clamp: 0"}',
             "by: x-y}",
         ),
         Slip(
@@ -244,7 +249,7 @@ SLIPS: dict[tuple[str, str], tuple[Slip, ...]] = {
         ),
     ),
     ("DIVIDE-004", "nothing said of the dividing device but its kind"): (
-        Slip(WHEEL, 40, 'wheel: {once_per_turn: ±10"}, worm: {once_per_crank: ±4"}, setting: 2"}', "}"),
+        Slip(WHEEL, 40, 'wheel: {once_per_turn: ±10"}, worm: {once_per_crank: ±4"}, setting: 2", clamp: 0"}', "}"),
         Slip(
             PLATE,
             30,
@@ -299,7 +304,7 @@ CLASSIC = (
     Slip(
         WHEEL,
         50,
-        "centre: {on: hub, by: four-jaw, runout: {at_most: 6 um, measured: 4 um, uncertainty: 1 um}}",
+        "centre: {on: hub, by: four-jaw, at: 23, runout: {at_most: 6 um, measured: 4 um, uncertainty: 1 um}}",
         "centre: {on: rim, by: shimmed-jaws, runout: 100 um}",
     ),
     Slip(

@@ -73,7 +73,7 @@ def test_a_tilt_that_cannot_be_told_is_open_with_the_key_to_fill(gone: str, key:
             {"FIT-004", "HEAT-001", "HEAT-007"},
             id="more interference than the hub stands",
         ),
-        pytest.param("torque: 40 N m}", "torque: 90 N m}", {"FIT-003"}, id="more torque than the joint holds"),
+        pytest.param("torque: 40 N m,", "torque: 90 N m,", {"FIT-003"}, id="more torque than the joint holds"),
         pytest.param(
             "[5 degC, 45 degC]", "[5 degC, 75 degC]", {"FIT-003", "MESH-006", "STACK-002"}, id="loose when it is warm"
         ),

@@ -17,7 +17,7 @@ from setupcheck.report.text import as_text
 from setupcheck.shipped import shipped
 from tests.jobs.test_measuring import changed
 
-HELD = "centre: {on: hub, by: spigot, clearance: [2 um, 8 um], rests: pushed, runout: 3 um}"
+HELD = "centre: {on: hub, by: spigot, at: 23, clearance: [2 um, 8 um], rests: pushed, runout: 3 um}"
 BOTH = HELD.replace("runout: 3 um", "runout: {at_most: 3 um, measured: 7 um, uncertainty: 1 um, high_at: 90 deg}")
 ONLY = HELD.replace("runout: 3 um", "runout: {measured: 7 um, uncertainty: 1 um, high_at: 90 deg}")
 TRUED = "runout: {at_most: 6 um, measured: 4 um, uncertainty: 1 um}"

@@ -72,7 +72,7 @@ def test_a_gate_just_holds_and_a_fifth_more_does_not(job: Path, number: int) -> 
 SPOILT = {
     "shimmed jaws after the register": (
         "rotator-worm-wheel",
-        "centre: {on: hub, by: four-jaw, runout: {at_most: 6 um, measured: 4 um, uncertainty: 1 um}}",
+        "centre: {on: hub, by: four-jaw, at: 23, runout: {at_most: 6 um, measured: 4 um, uncertainty: 1 um}}",
         "centre: {on: rim, by: shimmed-jaws, runout: 100 um}",
     ),
     "a loose register": ("rotator-worm-wheel", "clearance: [2 um, 8 um]", "clearance: [2 um, 16 um]"),
@@ -104,7 +104,7 @@ SPOILT = {
     ),
     "an edge finder in a hurry": (
         "index-plate",
-        "centre: {on: bore, by: indicator, runout: 0.2 thou}",
+        "centre: {on: bore, by: indicator, at: 0.3125, runout: 0.2 thou}",
         "centre: {on: bore, by: edge-finder, x: 0.5 thou, y: 0.3 thou}",
     ),
     "a reamer that wanders": (
@@ -153,9 +153,7 @@ def test_a_remedy_brings_its_requirement_inside_when_it_is_typed_in(name: str) -
 
 
 GRIPS = "grips_first: shoulder-end"
-HEAD = (
-    """divide: {by: hole-circle, circle: 18, wheel: {once_per_turn: ±10"}, worm: {once_per_crank: ±4"}, setting: 2"}"""
-)
+HEAD = """divide: {by: hole-circle, circle: 18, wheel: {once_per_turn: ±10"}, worm: {once_per_crank: ±4"}, setting: 2", clamp: 0"}"""
 
 
 def failing(text: str, rule: str, what: str) -> tuple[Review, str, str]:
@@ -222,8 +220,8 @@ def test_a_backlash_with_one_limit_takes_the_insert_just_inside_it() -> None:
 
 
 def test_a_typical_hold_gives_way_to_ones_own_record() -> None:
-    old = "centre: {on: hub, by: four-jaw, runout: {at_most: 6 um, measured: 4 um, uncertainty: 1 um}}"
-    text = wheel((old, "centre: {on: hub, by: four-jaw, runout: {device: four-jaw}}"))
+    old = "centre: {on: hub, by: four-jaw, at: 23, runout: {at_most: 6 um, measured: 4 um, uncertainty: 1 um}}"
+    text = wheel((old, "centre: {on: hub, by: four-jaw, at: 23, runout: {device: four-jaw}}"))
     _, key, remedy = failing(text, "STACK-001", "backlash-swing")
     said = re.fullmatch(
         r"Op 50: put your own record of the run-out of hub in four-jaw chuck in place of the typical 10\.0 um, up to "

@@ -16,6 +16,7 @@ DISC = """
 setupcheck: 1
 title: Disc bored in two holdings
 units: mm
+confidence: 95 %
 machines: {lathe-A: {kind: lathe, axis_runout: 3 um}}
 parts:
   disc:

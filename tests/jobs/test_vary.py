@@ -47,9 +47,9 @@ def told(found: Review) -> dict[str, object]:
         ("setups.40.hold.centre.clearance=[2 um, 16 um]", "clearance: [2 um, 8 um]", "clearance: [2 um, 16 um]"),
         ("setups.40.hold.centre.clearance[2]=16 um", "clearance: [2 um, 8 um]", "clearance: [2 um, 16 um]"),
         (
-            "setups.50.hold.centre={on: rim, by: shimmed-jaws, runout: 100 um}",
-            "centre: {on: hub, by: four-jaw, runout: {at_most: 6 um, measured: 4 um, uncertainty: 1 um}}",
-            "centre: {on: rim, by: shimmed-jaws, runout: 100 um}",
+            "setups.50.hold.centre={on: rim, by: shimmed-jaws, at: 12, runout: 100 um}",
+            "centre: {on: hub, by: four-jaw, at: 23, runout: {at_most: 6 um, measured: 4 um, uncertainty: 1 um}}",
+            "centre: {on: rim, by: shimmed-jaws, at: 12, runout: 100 um}",
         ),
         ("cutters.fly.tip_radius=14", "tip_radius: 20.0", "tip_radius: 14"),
         ("require[1].at_most=20 um", "what: cumulative-pitch, of: wheel.teeth, at_most: 40 um",
@@ -118,9 +118,11 @@ def test_what_the_changes_do_not_reach_does_not_move_at_all() -> None:
 
 
 def test_the_value_of_a_remedy_put_in_cures_its_finding() -> None:
-    old = "centre: {on: hub, by: four-jaw, runout: {at_most: 6 um, measured: 4 um, uncertainty: 1 um}}"
+    old = "centre: {on: hub, by: four-jaw, at: 23, runout: {at_most: 6 um, measured: 4 um, uncertainty: 1 um}}"
     bad, key, remedy = failing(
-        wheel((old, "centre: {on: hub, by: four-jaw, runout: {device: four-jaw}}")), "STACK-001", "backlash-swing"
+        wheel((old, "centre: {on: hub, by: four-jaw, at: 23, runout: {device: four-jaw}}")),
+        "STACK-001",
+        "backlash-swing",
     )
     said = re.search(r"up to (\d+\.\d um) \((setups\.50\.hold\.centre\.runout)\)", remedy)
     assert said is not None, remedy
@@ -321,8 +323,8 @@ def test_a_shops_record_counts_on_both_sides(tmp_path: Path) -> None:
     record = tmp_path / "devices.csv"
     rows = "".join(f"four-jaw,runout,2026-0{i}-01,{size} um,\n" for i, size in enumerate((3, 4, 3, 5, 4, 3), 1))
     record.write_text("device,what,date,value,note\n" + rows, encoding="utf-8")
-    change = "setups.50.hold.centre={on: hub, by: four-jaw, runout: {device: four-jaw}}"
-    old = "centre: {on: hub, by: four-jaw, runout: {at_most: 6 um, measured: 4 um, uncertainty: 1 um}}"
+    change = "setups.50.hold.centre={on: hub, by: four-jaw, at: 23, runout: {device: four-jaw}}"
+    old = "centre: {on: hub, by: four-jaw, at: 23, runout: {at_most: 6 um, measured: 4 um, uncertainty: 1 um}}"
     written = tmp_path / "job.yaml"
     written.write_text(wheel((old, change.partition("=")[2].join(("centre: ", "")))), encoding="utf-8")
     found = vary(shipped("jobs/rotator-worm-wheel.yaml"), sets(change), devices=record)

@@ -57,7 +57,7 @@ setups:
       square: {{on: seat, by: flange, face_runout: 3 um, across: {0.8 * d2!r}}}
       stop:   {{on: seat, error: 5 um}}
     head: {{tilt: {lead:.5f} deg, uncertainty: 0.5', leans: {lean}, mid_plane: {{found: after-tilt, error: 10 um}}}}
-    divide: {{by: hole-circle, circle: 18, wheel: {{once_per_turn: ±12"}}, worm: {{once_per_crank: ±4"}}, setting: 2"}}
+    divide: {{by: hole-circle, circle: 18, wheel: {{once_per_turn: ±12"}}, worm: {{once_per_crank: ±4"}}, setting: 2", clamp: 0"}}
     cut:
       teeth: {{cutter: fly, depth: {2.2 * module!r}, depth_from: {{surface: throat, at_most: 10 um, tool: standing}}, depth_error: 10 um}}
 place:

@@ -16,7 +16,7 @@ from tests.unit.report.sample import PLATE, WHEEL, changed, reviewed
 HUB = shipped("jobs/coupling-hub.yaml").read_text(encoding="utf-8")
 FAILING = shipped("jobs/mistakes/hidden-chuck-run-out.yaml").read_text(encoding="utf-8")
 
-SPREAD = changed(WHEEL, ('setting: 2"}', 'setting: 2", order: spread}'))
+SPREAD = changed(WHEEL, ('setting: 2", clamp: 0"}', 'setting: 2", clamp: 0", order: spread}'))
 COLD = changed(
     HUB,
     ("hub: 260 degC, by: oven, oven_error: 10 degC, carry", "shaft: -70 degC, cold_by: dry-ice, cold_error: 5 degC, carry"),
@@ -25,7 +25,7 @@ READ = "readings: {gap 1: 0 um, gap 19: 6 um, gap 37: 11 um, gap 55: 4 um}, unce
 PROVED = changed(WHEEL, ("0.3]}", f"0.3], prove_out: {{depth: 0.8 mm, ball: 2.5 mm, about: hub, {READ}}}}}"))
 PROVING = changed(WHEEL, ("0.3]}", "0.3], prove_out: {depth: 0.8 mm}}"))
 BY_TABLE = PLATE[PLATE.index("divide:") : PLATE.index("}\n    cut:\n      holes")] + "}"
-TRUED = "centre: {on: bore, by: indicator, runout: 0.2 thou}"
+TRUED = "centre: {on: bore, by: indicator, at: 0.3125, runout: 0.2 thou}"
 BY_XY = changed(
     PLATE,
     (BY_TABLE, "divide: {by: x-y, x: 0.2 thou, y: 0.2 thou, step: 0.1 thou}"),
@@ -205,7 +205,7 @@ def test_points_to_sign_are_those_the_job_has() -> None:
 
 
 def test_a_limited_pass_is_told_beside_the_verdict() -> None:
-    said = "of what this version computes, on 5 defaults"
+    said = "of what this version computes"
     assert ("PASS", said) == (sheet_of(told(WHEEL)).verdict, sheet_of(told(WHEEL)).limited)
 
 

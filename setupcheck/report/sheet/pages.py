@@ -25,7 +25,7 @@ from setupcheck.report.sheet.showing import paper
 from setupcheck.report.sheet.words import ROLE, Said, Words
 from setupcheck.report.text import counts, how_far, limits_in_words
 from setupcheck.report.uncomputed import in_lines, uncomputed
-from setupcheck.report.wording import finer, title_of, unit_of, waiting_alike
+from setupcheck.report.wording import finer, is_the_entry, title_of, unit_of, waiting_alike
 from setupcheck.report.worked_out import worked_out
 from setupcheck.rulebook.records import CautionLine, Finding
 
@@ -136,8 +136,14 @@ def _troubles(found: Review, op: int | None = None) -> list[Trouble]:
     """What is not passed, in the whole job or in one operation."""
     shown = [f for f in found.evaluation.findings if f.verdict != "pass" and op in (None, f.op)]
     return [
-        Trouble(f.verdict, rules, paper(f.at or "job", 80), f.line, paper(_said(f), 400), paper(_do(found, f), 400))
-        for rules, f in waiting_alike(shown)
+        Trouble(
+            alike[0].verdict,
+            rules,
+            tuple((paper(f.at or "job", 80), f.line) for f in alike),
+            paper(_said(alike[0]), 400),
+            paper(_do(found, alike[0]), 400),
+        )
+        for rules, alike in waiting_alike(shown)
     ]
 
 
@@ -156,6 +162,8 @@ def _house(found: Review) -> tuple[Said, ...]:
 
 def _do(found: Review, finding: Finding) -> str:
     """What to do about a finding; empty where the rule book knows nothing."""
+    if is_the_entry(finding):
+        return remedy_in_words(found, finding) or ""
     if finding.verdict == "open" and finding.missing:
         return f"Fill {', '.join(finding.missing[:4])}"
     if finding.verdict == "waived":

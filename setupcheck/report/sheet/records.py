@@ -21,12 +21,14 @@ class Caution:
 
 @record
 class Trouble:
-    """A finding that is not passed, and what to do about it."""
+    """A finding that is not passed, or several that wait for the same thing, and what to do about it.
+
+    places  (path in the job, its line in the file) of each
+    """
 
     verdict: str
     rule: str
-    at: str
-    line: int
+    places: tuple[tuple[str, int], ...]
     message: str
     remedy: str
 

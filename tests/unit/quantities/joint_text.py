@@ -37,7 +37,7 @@ setups:
       square: bore
       joint: degreased
       heat: {hub: 190 degC, oven_error: 5 degC, carry: 10 s}
-      must_carry: {torque: 50 N m}
+      must_carry: {torque: 50 N m, axial_force: 0 N}
       serves_at: [10 degC, 25 degC]
 """
 

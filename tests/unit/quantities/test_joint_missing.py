@@ -89,7 +89,7 @@ def test_friction_without_a_row_asks_for_the_shop_s_own() -> None:
 
 
 def test_nothing_asked_is_nothing_judged() -> None:
-    text = changed(("      must_carry: {torque: 50 N m}\n", ""))
+    text = changed(("      must_carry: {torque: 50 N m, axial_force: 0 N}\n", ""))
     assert [] == [f for f in reviewed(text).evaluation.findings if f.rule == "FIT-003"]
 
 

@@ -87,14 +87,14 @@ def test_a_joint_that_is_loose_warm_holds_nothing_and_fails() -> None:
 
 
 def test_torque_and_force_along_the_axis_add_at_right_angles() -> None:
-    both = changed(("{torque: 50 N m}", "{torque: 90 N m, axial_force: 4 kN}"))
+    both = changed(("{torque: 50 N m, axial_force: 0 N}", "{torque: 90 N m, axial_force: 4 kN}"))
     assert 5000.0 == pytest.approx(number(both, "fit.force_asked"))  # 3000 N at the seat of 60, 4000 N along it
-    axial = changed(("{torque: 50 N m}", "{axial_force: 4 kN}"))
+    axial = changed(("{torque: 50 N m, axial_force: 0 N}", "{axial_force: 4 kN}"))
     assert 4000.0 == pytest.approx(number(axial, "fit.force_asked"))
 
 
 def test_at_the_temperature_it_holds_to_the_joint_holds_just_what_it_must() -> None:
-    asked = ("{torque: 50 N m}", "{torque: 100 N m}")
+    asked = ("{torque: 50 N m, axial_force: 0 N}", "{torque: 100 N m}")
     limit = number(changed(asked), "fit.holds_to")
     assert limit > 25.0
     for shift, verdict in ((-0.1, "pass"), (0.1, "fail")):

@@ -215,7 +215,7 @@ def test_a_head_with_one_error_on_record_takes_the_others_as_typical_and_the_war
     size = limit(shop, WHEEL_OF_HEAD) / SECOND
     stated = (
         f'divide: {{by: hole-circle, circle: 18, wheel: {{once_per_turn: {size!r}"}}, '
-        'worm: {once_per_crank: 15"}, setting: 5"}'
+        'worm: {once_per_crank: 15"}, setting: 5", clamp: 0"}'
     )
     same_worst(found, reviewed(changed(WHEEL, (DIVIDE, stated))))
     told = flat(as_text(found))
@@ -281,6 +281,6 @@ def test_the_job_itself_is_not_changed_and_knows_what_its_file_wrote(shop: Path)
 
 
 def test_an_inch_job_is_told_its_limits_in_thou(shop: Path) -> None:
-    named = ("by: indicator, runout: 0.2 thou", "by: indicator, runout: {device: M-3}")
+    named = ("by: indicator, at: 0.3125, runout: 0.2 thou", "by: indicator, at: 0.3125, runout: {device: M-3}")
     found = judged(changed(PLATE_JOB, named), write(shop, ("M-3", "runout", "um", (5, 6, 5, 6, 5))))
     assert "M-3 runout: 0.26 thou" in flat(as_text(found))

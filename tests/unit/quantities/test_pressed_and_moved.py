@@ -72,7 +72,7 @@ def test_the_window_as_printed_passes_at_both_its_ends() -> None:
 
 
 def test_a_joint_without_a_load_holds_until_it_is_loose() -> None:
-    idle = changed(("{torque: 50 N m}", "{torque: 0 N m}"))
+    idle = changed(("{torque: 50 N m, axial_force: 0 N}", "{torque: 0 N m}"))
     assert answer(idle, "fit.holds_to") is None
     assert number(idle, "fit.loosens_at") > 25.0
 

@@ -14,7 +14,10 @@ from setupcheck.report.text import as_text
 from tests.unit.report.sample import PLATE, WHEEL, changed, flat, reviewed
 
 SECOND = math.pi / 648_000.0
-DIVIDE = 'divide: {by: hole-circle, circle: 18, wheel: {once_per_turn: ±10"}, worm: {once_per_crank: ±4"}, setting: 2"}'
+DIVIDE = (
+    'divide: {by: hole-circle, circle: 18, wheel: {once_per_turn: ±10"}, '
+    'worm: {once_per_crank: ±4"}, setting: 2", clamp: 0"}'
+)
 OVEN = ("by: oven, oven_error: 10 degC", "by: hot-plate")
 TILT = ("uncertainty: 2', leans", "by: readout, leans")
 
@@ -105,7 +108,8 @@ def test_a_way_of_dividing_without_errors_takes_its_typical_ones_and_every_findi
 
 def test_a_typical_division_counts_as_much_as_the_same_figures_stated() -> None:
     same = (
-        'divide: {by: hole-circle, circle: 18, wheel: {once_per_turn: 60"}, worm: {once_per_crank: 15"}, setting: 5"}'
+        'divide: {by: hole-circle, circle: 18, wheel: {once_per_turn: 60"}, '
+        'worm: {once_per_crank: 15"}, setting: 5", clamp: 0"}'
     )
     stated = reviewed(changed(WHEEL, (DIVIDE, same)))
     taken = reviewed(changed(WHEEL, (DIVIDE, "divide: {by: hole-circle, circle: 18}")))
@@ -124,7 +128,7 @@ def test_a_way_of_dividing_that_is_not_in_the_table_stays_open(by: str) -> None:
 
 
 def test_one_stated_error_is_the_heads_record_and_nothing_is_added_to_it() -> None:
-    found = reviewed(changed(WHEEL, (DIVIDE, 'divide: {by: hole-circle, circle: 18, setting: 2"}')))
+    found = reviewed(changed(WHEEL, (DIVIDE, 'divide: {by: hole-circle, circle: 18, setting: 2", clamp: 0"}')))
     assert "stated" == answer(found, "divide.error_stated", "40").value  # type: ignore[attr-defined]
     assert all(not f.rests_on for f in found.evaluation.findings)
 

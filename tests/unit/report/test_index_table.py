@@ -28,7 +28,8 @@ TEXTS = {
 }
 WHEEL = TEXTS["rotator-worm-wheel"]
 HEAD = (
-    """divide: {by: hole-circle, circle: 18, wheel: {once_per_turn: ±10"}, worm: {once_per_crank: ±4"}, setting: 2"}"""
+    'divide: {by: hole-circle, circle: 18, wheel: {once_per_turn: ±10"}, '
+    'worm: {once_per_crank: ±4"}, setting: 2", clamp: 0"}'
 )
 TABLE = (
     """divide: {by: rotary-table, wheel: {once_per_turn: ±8"}, worm: {once_per_crank: ±2"}, setting: 2", clamp: 1"}"""

@@ -13,7 +13,8 @@ from hypothesis import strategies as st
 from setupcheck.errors import SetupcheckError
 from setupcheck.jobfile.reading import read_job_text
 from setupcheck.notation import Units
-from setupcheck.shipped import examples
+from setupcheck.quantities.left_out import left_out
+from setupcheck.shipped import examples, shipped
 from setupcheck.starting.answers import Answers, read_answer
 from setupcheck.starting.copying import copied, known_example, title_and_job
 from setupcheck.starting.dividing import division
@@ -56,32 +57,32 @@ def test_the_defaults_of_every_kind_review_at_once(kind: str, units: Units) -> N
     assert_it_reviews_at_once(begun(kind, units))
 
 
-@pytest.mark.parametrize(
-    ("kind", "units", "given"),
-    [
-        ("worm-wheel", "mm", {"teeth": "30", "module": "2", "hand": "left"}),
-        ("worm-wheel", "mm", {"teeth": "127", "module": "1"}),  # no hole circle closes on it
-        ("worm-wheel", "mm", {"teeth": "36", "module": "5", "starts": "3"}),
-        ("worm-wheel", "mm", {"teeth": "60", "module": "2", "join": "none"}),
-        ("worm-wheel", "mm", {"teeth": "60", "module": "4", "join": "slide"}),
-        ("worm-wheel", "mm", {"torque": "0 N m"}),
-        ("worm-wheel", "in", {"teeth": "40", "module": "10 DP"}),
-        ("worm-wheel", "in", {"teeth": "60", "module": "8 DP", "bore": "2 H6"}),
-        ("spur-gear", "mm", {"teeth": "97", "module": "3"}),
-        ("spur-gear", "in", {"teeth": "24", "module": "8 DP", "bore": "0.75 +0.0008/0"}),
-        ("coupling-hub", "mm", {"bore": "40 H7"}),
-        ("coupling-hub", "mm", {"bore": "100 H7", "outside": "135"}),
-        ("coupling-hub", "mm", {"bore": "20 H7"}),
-        ("coupling-hub", "in", {"bore": "1.5 H7"}),
-        ("bearing-ring", "mm", {"bore": "25"}),
-        ("bearing-ring", "in", {"bore": "4"}),
-        ("index-plate", "mm", {"circle": "400", "holes": "6"}),
-        ("index-plate", "in", {"circle": "10", "holes": "127"}),
-        ("bushing", "mm", {"bore": "12 H7"}),
-        ("bushing", "mm", {"bore": "80 H7"}),
-        ("bushing", "in", {"bore": "0.75 H7"}),
-    ],
-)
+TRIED: list[tuple[str, Units, dict[str, str]]] = [
+    ("worm-wheel", "mm", {"teeth": "30", "module": "2", "hand": "left"}),
+    ("worm-wheel", "mm", {"teeth": "127", "module": "1"}),  # no hole circle closes on it
+    ("worm-wheel", "mm", {"teeth": "36", "module": "5", "starts": "3"}),
+    ("worm-wheel", "mm", {"teeth": "60", "module": "2", "join": "none"}),
+    ("worm-wheel", "mm", {"teeth": "60", "module": "4", "join": "slide"}),
+    ("worm-wheel", "mm", {"torque": "0 N m"}),
+    ("worm-wheel", "in", {"teeth": "40", "module": "10 DP"}),
+    ("worm-wheel", "in", {"teeth": "60", "module": "8 DP", "bore": "2 H6"}),
+    ("spur-gear", "mm", {"teeth": "97", "module": "3"}),
+    ("spur-gear", "in", {"teeth": "24", "module": "8 DP", "bore": "0.75 +0.0008/0"}),
+    ("coupling-hub", "mm", {"bore": "40 H7"}),
+    ("coupling-hub", "mm", {"bore": "100 H7", "outside": "135"}),
+    ("coupling-hub", "mm", {"bore": "20 H7"}),
+    ("coupling-hub", "in", {"bore": "1.5 H7"}),
+    ("bearing-ring", "mm", {"bore": "25"}),
+    ("bearing-ring", "in", {"bore": "4"}),
+    ("index-plate", "mm", {"circle": "400", "holes": "6"}),
+    ("index-plate", "in", {"circle": "10", "holes": "127"}),
+    ("bushing", "mm", {"bore": "12 H7"}),
+    ("bushing", "mm", {"bore": "80 H7"}),
+    ("bushing", "in", {"bore": "0.75 H7"}),
+]
+
+
+@pytest.mark.parametrize(("kind", "units", "given"), TRIED)
 def test_other_sizes_review_at_once(kind: str, units: Units, given: dict[str, str]) -> None:
     assert_it_reviews_at_once(begun(kind, units, **given))
 
@@ -109,6 +110,65 @@ def test_any_usual_plate_reviews_at_once(holes: int, circle: int) -> None:
     assert_it_reviews_at_once(begun("index-plate", holes=str(holes), circle=str(circle)))
 
 
+@pytest.mark.parametrize(
+    ("kind", "units", "given"),
+    [
+        *((kind, units, {}) for kind in KINDS for units in ("mm", "in")),
+        *TRIED,
+        ("worm-wheel", "mm", {"teeth": "15"}),  # undercut
+        ("worm-wheel", "in", {"starts": "2", "join": "none"}),
+        ("worm-wheel", "in", {"join": "slide"}),
+        ("spur-gear", "mm", {"teeth": "127"}),  # no hole circle closes on it
+        ("coupling-hub", "mm", {"join": "slide"}),
+        ("coupling-hub", "mm", {"bore": "20 H7", "join": "shrink"}),
+        ("coupling-hub", "mm", {"torque": "0 N m"}),
+        ("bushing", "mm", {"torque": "0 N m"}),
+    ],
+)
+def test_a_new_file_leaves_out_no_entry_that_a_figure_may_rest_on(
+    kind: str, units: Units, given: dict[str, str]
+) -> None:
+    assert () == left_out(begun(kind, units, **given).review.loaded)
+
+
+@pytest.mark.parametrize("name", examples())
+def test_a_copy_leaves_out_no_more_than_its_example(name: str) -> None:
+    copy = copied(name, title="A", job="1", file="job.yaml").review.loaded
+    example = shipped(f"jobs/{name}.yaml").read_text(encoding="utf-8")
+    assert left_out(read_job_text(example, "job.yaml")) == left_out(copy)
+
+
+def carried(kind: str, op: int, **given: str) -> dict[str, float]:
+    """What the joint of a new file must carry [N mm, N]."""
+    (join,) = (setup.join for setup in begun(kind, **given).review.loaded.job.setups if setup.op == op)
+    assert join is not None
+    assert join.must_carry is not None
+    return {name: load.value for name, load in join.must_carry.items()}
+
+
+def test_the_worm_drags_the_wheel_along_its_axis_by_lead_and_friction_under_the_torque_that_was_answered() -> None:
+    sizes = {"teeth": "50", "module": "2", "starts": "1", "worm_diameter": "32", "torque": "50 N m"}
+    leaned = math.tan(math.atan(2 / 32) + math.atan(0.1))  # 1000 N round the wheel
+    assert {"torque": 50_000.0, "axial_force": nice(1000.0 * leaned, up=True)} == carried("worm-wheel", 70, **sizes)
+
+
+@pytest.mark.parametrize(
+    ("kind", "op", "given", "along"),
+    [
+        ("worm-wheel", 70, {"torque": "0 N m"}, 0.0),
+        ("coupling-hub", 50, {"outside": "160", "torque": "400 N m"}, 800.0),  # 5000 N round the rim, friction 0.15
+        ("coupling-hub", 50, {"torque": "0 N m"}, 0.0),
+        ("bearing-ring", 30, {}, 0.0),  # its thrust goes onto the shoulder
+        ("bushing", 20, {"bore": "30 H7", "torque": "6 N m"}, 400.0),  # as much as round its hole
+        ("bushing", 20, {"torque": "0 N m"}, 0.0),
+    ],
+)
+def test_the_force_along_the_axis_follows_from_the_torque(
+    kind: str, op: int, given: dict[str, str], along: float
+) -> None:
+    assert along == carried(kind, op, **given)["axial_force"]
+
+
 def test_what_was_answered_stands_in_the_file() -> None:
     found = begun("worm-wheel", teeth="60", module="2", bore="30 H6", tightest="120 um", torque="12 N m")
     job = found.review.loaded.job
@@ -116,7 +176,7 @@ def test_what_was_answered_stands_in_the_file() -> None:
     assert (60, 120.0) == (teeth.count, teeth.on_circle)  # type: ignore[union-attr]
     assert "bore:     {kind: bore, diameter: 30 H6," in found.text
     assert "{what: cumulative-pitch, of: wheel.teeth, at_most: 120 um}" in found.text
-    assert "must_carry: {torque: 12 N m}" in found.text
+    assert "must_carry: {torque: 12 N m, axial_force: " in found.text
     assert "{what: torque, of: 70, at_least: 12 N m}" in found.text
 
 

@@ -158,7 +158,7 @@ def test_a_part_turned_round_shows_its_other_end_to_the_spindle() -> None:
 def test_each_datum_has_its_letter_and_its_words() -> None:
     said = words_of(drawn("rotator-worm-wheel.yaml", "hold-50"))
     assert "A" in said and "B, C" in said
-    assert "A hub rules the axis: four-jaw, run-out up to 6 um, measured 4 um" in said
+    assert "A hub rules the axis: four-jaw, run-out up to 6 um, measured 4 um, at z 23" in said
     assert "B seat rules the lean: parallels, face run-out up to 4 um, on Ø100" in said
     assert "C seat rules the length: up to 5 um" in said
 
