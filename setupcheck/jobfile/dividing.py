@@ -185,8 +185,15 @@ class Divide(Shop):
             )
         if self.elevation is not None and abs(self.elevation) >= STEEPEST:
             raise ValueError("a sight this steep says nothing about direction. Write an elevation below 80 deg")
+        for key in LEANS:
+            if (getattr(self, key) or 0.0) > LARGEST_LEAN:
+                raise ValueError(f'{key} is what is left after setting true. Write an angle up to 5 deg, as in 10"')
         return self
 
 
+LEANS = ("polygon_tilt", "plumb", "collimation", "trunnion")
+"""What an axis or a line of sight may be out of true by, which counts to the first order."""
+LARGEST_LEAN = notation.angle("5 deg")
+"""Up to which it does [rad]. Source: series; our screening choice."""
 STEEPEST = notation.angle("80 deg")
 """Elevation of a sight [rad] from which its tangent runs away. Source: our screening choice."""

@@ -165,18 +165,26 @@ def expansion_for(question: Question, part: Part, material: Material, *, tempera
     Raises: ValueError beyond.  Source: derived here.
     """
     end_of_means = HEATED_END if (question, part) == ("joining", "hub") else MEANS_END
-    if not COLD_END <= temperature <= end_of_means:
-        raise ValueError(
-            f"the {part} at {temperature:.0f} degC: how much it has grown or shrunk is known from {COLD_END:g} to "
-            f"{end_of_means:g} degC alone"
-        )
+    means = means_at(material, part, temperature, end=end_of_means)
     large = (part == "hub") == (question == "holding")
     cold = temperature < REFERENCE_TEMPERATURE
     end: End = "high" if large != cold else "low"
     way = "contraction" if cold else "expansion"
-    return _chosen(
-        material.cooling if temperature < COLD else material.heating, end, f"{end} {way} of the {part}, for {question}"
-    )
+    return _chosen(means, end, f"{end} {way} of the {part}, for {question}")
+
+
+def means_at(material: Material, what: str, temperature: float, *, end: float = MEANS_END) -> Range:
+    """Least and largest mean expansion of a material from 20 degC to a temperature [degC], as far as it is known [1/K].
+
+    what  for the message: hub, housing;  end  up to which the means of heating serve [degC]
+    Validity: COLD_END to `end`; below COLD the colder table.  Raises: ValueError beyond.  Source: rules/data/materials.yaml.
+    """
+    if not COLD_END <= temperature <= end:
+        raise ValueError(
+            f"the {what} at {temperature:.0f} degC: how much it has grown or shrunk is known from {COLD_END:g} to "
+            f"{end:g} degC alone"
+        )
+    return material.cooling if temperature < COLD else material.heating
 
 
 def temper_cap(heat_cap: float, *, last_temper: float | None) -> float:

@@ -19,19 +19,19 @@ from setupcheck.ledger.account import Account
 from setupcheck.ledger.causes import Cause
 from setupcheck.ledger.figures import OverATurn
 from setupcheck.ledger.route import State
-from setupcheck.physics.materials import Range
+from setupcheck.physics.materials import Range, means_at
 from setupcheck.quantities import backlash_read, growing, pairing, strength, within
 from setupcheck.quantities.backlash_read import AsRead
-from setupcheck.quantities.book import Open, OutOfRange, all_missing
+from setupcheck.quantities.book import Open, OutOfRange, all_missing, in_range
 from setupcheck.quantities.causes import Entry, length_error, size_error
 from setupcheck.quantities.cutter_shape import insert_width, tilt_of
 from setupcheck.quantities.drive import Drive, WheelCut, drive, wheel_cut
 from setupcheck.quantities.gap_measured import measured_gap
 from setupcheck.quantities.joining import JointSizes, interference_least, interference_most, sizes
-from setupcheck.quantities.relations import Built, pair, second_order
+from setupcheck.quantities.relations import Built, beside_its_axis, pair, second_order
 from setupcheck.quantities.requirements import Stack
 from setupcheck.quantities.shop import Floor
-from setupcheck.quantities.stuff import expansion_of, material_of
+from setupcheck.quantities.stuff import material_named, material_of
 from setupcheck.quantities.thread import Thread, thread
 from setupcheck.record import record
 
@@ -104,7 +104,10 @@ def backlash(floor: Floor, stack: Stack) -> Built | Open:
 
 
 def chain(floor: Floor, stack: Stack) -> Chain | Open:
-    """Every part of the backlash that the plan makes, or what is missing. Source: as `backlash`."""
+    """Every part of the backlash that the plan makes, or what is missing. Source: as `backlash`.
+
+    Raises: OutOfRange for a ring of gaps too far off its axis.
+    """
     found = drive(floor)
     if found is None:
         return Open(("mesh.wheel",), "backlash is computed for a worm and its wheel")
@@ -123,6 +126,7 @@ def chain(floor: Floor, stack: Stack) -> Chain | Open:
         return all_missing(*opened)
     assert isinstance(gap, Account) and isinstance(depth, Account) and isinstance(mesh, Account)
     assert isinstance(grown, Account)
+    beside_its_axis(g.offset - r.axis_at(g.z), found.wheel_diameter / 2.0)
     return Chain(found, made, gap + mesh, depth, grown * (1.0 / found.wheel_diameter), g, r)
 
 
@@ -371,7 +375,7 @@ def _served(floor: Floor, found: Drive, *, room: float = REFERENCE) -> Served | 
 def warmed(floor: Floor, found: Drive, served: tuple[float, ...] | None, *, room: float = REFERENCE) -> Served | Open:
     """Change of the backlash and of the pitch of a whole drive that goes from `room` through some temperatures [degC].
 
-    Source: linear expansion, `thermal_backlash`.
+    Raises: OutOfRange for a temperature that no expansion is known for.  Source: linear expansion, `thermal_backlash`.
     """
     mesh, worm = floor.loaded.job.mesh, floor.loaded.job.worm
     assert mesh is not None and worm is not None
@@ -383,15 +387,14 @@ def warmed(floor: Floor, found: Drive, served: tuple[float, ...] | None, *, room
         missing += wheel.missing
     if missing or served is None or mesh.housing is None or worm.material is None or isinstance(wheel, Open):
         return Open(missing, wheel.because if isinstance(wheel, Open) else "")
-    house, screw = expansion_of(mesh.housing, "mesh.housing"), expansion_of(worm.material, "worm.material")
+    house, screw = material_named(mesh.housing, "mesh.housing"), material_named(worm.material, "worm.material")
     opened = [x for x in (house, screw) if isinstance(x, Open)]
     if opened or isinstance(house, Open) or isinstance(screw, Open):
         return all_missing(*opened)
-    each = [
-        (t - room, h, w, s)
-        for t in (*served, room)
-        for h, w, s in product(_ends(house), _ends(wheel.heating), _ends(screw))
-    ]
+    parts = (("housing", house), ("wheel", wheel), ("worm", screw))
+    with in_range:
+        means = {t: [means_at(of, what, t) for what, of in parts] for t in (*served, room)}
+    each = [(t - room, h, w, s) for t, of in means.items() for h, w, s in product(*map(_ends, of))]
     moved = [thermal_backlash(found, rise=t, housing=h, wheel=w, worm=s) for t, h, w, s in each]
     strains = [t * (w - s) for t, _, w, s in each]
     path = "mesh.serves_at" if mesh.serves_at is not None else "mesh"

@@ -16,6 +16,7 @@ from setupcheck.ledger.causes import Cause
 from setupcheck.notation import NotationError, length, show
 from setupcheck.quantities.book import Open
 from setupcheck.quantities.drive import Drive, drive
+from setupcheck.quantities.relations import too_far_off
 from setupcheck.quantities.requirements import Stack
 from setupcheck.quantities.shop import Floor
 from setupcheck.record import record
@@ -152,7 +153,10 @@ def end_float_in(floor: Floor, given: BacklashRead) -> float:
 
 
 def as_read(floor: Floor, found: Drive) -> AsRead | Open | None:
-    """The readings along the reference circle; None where there are none to speak of. Source: the job file, least squares."""
+    """The readings along the reference circle; None where there are none to speak of.
+
+    Open as well where their wave is that of a ring too far off its axis.  Source: the job file, least squares.
+    """
     mesh = floor.loaded.job.mesh
     given = mesh.backlash_read if mesh is not None else None
     if given is None:
@@ -172,15 +176,10 @@ def as_read(floor: Floor, found: Drive) -> AsRead | Open | None:
             (f"{PATH}.end_float",),
             f"gap {least} reads {read} along the reference circle, less than the worm's end float of {end}: it cannot be in it",
         )
-    return AsRead(
-        given,
-        found.teeth,
-        arcs,
-        given.uncertainty / factor,
-        lost_motion,
-        2.0 * math.tan(found.pressure_angle),
-        waves.fitted(arcs, found.teeth),
-    )
+    wave, slope = waves.fitted(arcs, found.teeth), 2.0 * math.tan(found.pressure_angle)
+    if beside := too_far_off(wave.amplitude / slope, found.wheel_diameter / 2.0):
+        return Open((f"{PATH}.readings",), beside)
+    return AsRead(given, found.teeth, arcs, given.uncertainty / factor, lost_motion, slope, wave)
 
 
 def ruling(floor: Floor, stack: Stack) -> AsRead | Open | None:

@@ -11,7 +11,7 @@ from setupcheck.quantities.drive import middle
 from setupcheck.quantities.shop import Floor
 from setupcheck.quantities.tilting import cuts_the_wheel
 from setupcheck.worm.cutter import profile_error_of_tilt
-from setupcheck.worm.tilt import Shift, shift_after_tilt, sine_bar_angle, sine_bar_stack, tilt_error
+from setupcheck.worm.tilt import Shift, is_an_error, shift_after_tilt, sine_bar_angle, sine_bar_stack, tilt_error
 
 
 def worst_error(floor: Floor, set_angle: float, needed_angle: float, allowed: float) -> float | Open | None:
@@ -63,19 +63,25 @@ def ridge_shift(shape: Shape, worst: float, exact: float | None) -> float | None
     """How far the ridge of contact moves along the face for the worst error of the tilt [mm]: d tau/(2 A), closed form.
 
     The middle of a marking moves several times as far. None where the exact gap gives what the tilt may be off, which TILT-009
-    judges.  Source: worm.cutter.
+    judges.  Raises: OutOfRange for an error that is a wrong setting.  Source: worm.cutter.
     """
-    return worst / (2.0 * shape.crowning) if exact is None and shape.crowning > 0.0 else None
+    if exact is not None or shape.crowning <= 0.0:
+        return None
+    with in_range:
+        is_an_error(worst)
+    return worst / (2.0 * shape.crowning)
 
 
 def profile_error(shape: Shape, worst: float, exact: float | None) -> float | None:
     """What the worst error of the tilt does to the profile over two modules of height [mm]: 2 m d tau B/(2 A), closed form.
 
     None where the exact gap gives what the tilt may be off, which TILT-009 judges. Within a factor of two of the simulated
-    transmission error.  Source: worm.cutter.
+    transmission error.  Raises: OutOfRange for an error that is a wrong setting.  Source: worm.cutter.
     """
     if exact is not None or shape.crowning <= 0.0:
         return None
+    with in_range:
+        is_an_error(worst)
     return 2.0 * shape.cut.drive.module * profile_error_of_tilt(worst, crowning=shape.crowning, twist=shape.twist)
 
 

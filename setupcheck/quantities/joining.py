@@ -142,6 +142,7 @@ def needed(floor: Floor, join: Join, most: float, sizes: JointSizes, shaft_at: f
 
     T = 20 + [U_max + play + alpha_I D (T_shaft - 20)] / (alpha_A D); sizes hold at 20 degC, whatever the room has. Below
     20 degC, where a well chilled shaft goes into a cold hub, the hub's expansion is taken at its high end.
+    A need above 400 degC tells no more than that no heat which is known will do: what a plan gives beyond that is open.
     shaft_at  warmest the shaft may be when it meets the hub [degC]
     Source: derived in physics.heating, agrees with DIN 7190 (from memory); expansions from rules/data/materials.yaml.
     """

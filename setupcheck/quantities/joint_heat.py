@@ -19,6 +19,7 @@ from setupcheck.physics.heating import (
     lowest_hub_temperature,
     shoulder_gap,
 )
+from setupcheck.physics.materials import COLD_END
 from setupcheck.quantities.book import Open, OutOfRange, Quantity, in_range
 from setupcheck.quantities.chilling import contraction, out_of_the_cold, seat_of
 from setupcheck.quantities.joining import JointSizes
@@ -108,11 +109,12 @@ def at_shaft(floor: Floor, join: Join, planned: float | None, loss: float | None
     """Least heat the hub may still have as it goes over the shaft [degC]: planned - oven error - loss. Source: arithmetic.
 
     Where nothing heats the hub it has the room's temperature, or what is stated if that is colder.
+    Raises: OutOfRange for one colder than expansions are known.
     """
     if join.by != "shrink":
         return None
     if planned is None:
-        return unheated(join, floor.loaded.job.room)
+        return refuse_too_cold(unheated(join, floor.loaded.job.room))
     return None if loss is None else lowest_hub_temperature(planned, oven_error=0.0, carry_loss=loss)
 
 
@@ -124,6 +126,13 @@ def spare(at_shaft: float, needed: float) -> float | None:
 def unheated(join: Join, room: float) -> float:
     """Temperature of a hub that nothing heats [degC]: the room's, or as stated where it is colder. Source: the job file."""
     return min(join.heat.hub, room) if join.heat is not None and join.heat.hub is not None else room
+
+
+def refuse_too_cold(hub: float) -> float:
+    """The temperature of a hub that nothing heats [degC]. Raises: OutOfRange below COLD_END.  Source: physics.materials."""
+    if hub < COLD_END:
+        raise OutOfRange(f"a hub of {hub:.0f} degC: how far it has shrunk is known down to {COLD_END:g} degC alone")
+    return hub
 
 
 def _cold_alone(floor: Floor, join: Join) -> bool:

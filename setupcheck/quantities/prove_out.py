@@ -13,6 +13,7 @@ from setupcheck.ledger.route import State
 from setupcheck.notation import show_angle
 from setupcheck.quantities.book import Open, OutOfRange, Quantity
 from setupcheck.quantities.judged import Result
+from setupcheck.quantities.relations import beside_its_axis, too_far_off
 from setupcheck.quantities.route import machine_of
 from setupcheck.quantities.scopes import CutEntry
 from setupcheck.quantities.shop import Floor
@@ -99,13 +100,19 @@ def _few(given: ProveOut) -> bool:
 
 
 def ring(proof: Proof) -> fit.Ring | Open | None:
-    """Mean and eccentricity by least squares of the readings at the exact angles of their gaps. Source: division.prove_out."""
+    """Mean and eccentricity by least squares of the readings at the exact angles of their gaps.
+
+    Open where they tell no direction, and where the ring they show is too far off its axis.  Source: division.prove_out.
+    """
     if _few(proof.given):
         return None
     try:
-        return fit.reduce(proof.given.by_gap, proof.count)
+        found = fit.reduce(proof.given.by_gap, proof.count)
     except ValueError as why:
         return Open((f"{proof.path}.readings",), str(why))
+    pattern = proof.teeth.pattern if proof.teeth is not None else None
+    beside = too_far_off(found.eccentricity, pattern.radius) if pattern is not None else ""
+    return Open((f"{proof.path}.readings",), beside) if beside else found
 
 
 def eccentricity(ring: fit.Ring) -> float:
@@ -168,14 +175,19 @@ def _about(floor: Floor, proof: Proof) -> State | Open | None:
 
 
 def off_axis(floor: Floor, proof: Proof) -> Account | Open | None:
-    """Where the plan has the ring of gaps, seen from the axis it is read about: all causes between them. Source: the ledger."""
+    """Where the plan has the ring of gaps, seen from the axis it is read about: all causes between them.
+
+    Raises: OutOfRange for a ring too far off that axis.  Source: the ledger.
+    """
     about = _about(floor, proof)
     if about is None or isinstance(about, Open):
         return about
     assert proof.teeth is not None
     account = proof.teeth.offset - about.axis_at(proof.teeth.z)
     missing = account.undetermined()
-    return Open(missing) if missing else account
+    if missing or proof.teeth.pattern is None:
+        return Open(missing) if missing else account
+    return beside_its_axis(account, proof.teeth.pattern.radius)
 
 
 def planned(off_axis: Account) -> float:

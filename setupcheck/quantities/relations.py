@@ -87,9 +87,16 @@ def beside_its_axis(offset: Account, radius: float) -> Account:
     Source: sine series of a place seen from a centre beside the ring, derived here.
     """
     worst = offset.largest()
-    if math.isfinite(worst) and worst > LARGEST_ECCENTRICITY * radius:
-        raise OutOfRange(
-            f"the ring may be {worst:.4g} mm off its axis with a radius of {radius:.4g} mm: eccentricities are taken as "
-            f"small, up to {LARGEST_ECCENTRICITY:g} of the radius. Look for a wrong reading"
-        )
+    if math.isfinite(worst) and (beside := too_far_off(worst, radius)):
+        raise OutOfRange(beside)
     return offset
+
+
+def too_far_off(eccentricity: float, radius: float) -> str:
+    """Why a ring of teeth or holes is too far off its axis to be only shifted; empty where it is not. Source: as above."""
+    if eccentricity <= LARGEST_ECCENTRICITY * radius:
+        return ""
+    return (
+        f"the ring may be {eccentricity:.4g} mm off its axis with a radius of {radius:.4g} mm: eccentricities are taken as "
+        f"small, up to {LARGEST_ECCENTRICITY:g} of the radius. Look for a wrong reading"
+    )

@@ -298,7 +298,10 @@ def _allowance(floor: Floor, stack: Stack) -> Built | Open:
 
 
 def stock_left(floor: Floor, key: str) -> Built | Open:
-    """Least radial (or axial, for a face) stock of one cut (`40/bore`) [mm]."""
+    """Least radial (or axial, for a face) stock of one cut (`40/bore`) [mm].
+
+    Raises: OutOfRange for surfaces that lean too far to each other.
+    """
     before, after = floor.stock[key]
     if after.kind == "face":
         depth = after.facing * (before.z - after.z)
@@ -310,7 +313,8 @@ def stock_left(floor: Floor, key: str) -> Built | Open:
             missing += (f"parts.{after.part}.surfaces.{after.name}.diameter",)
         if missing:
             return Open(tuple(dict.fromkeys(missing)))
-        return Built(figures.FaceStock(axial.plus_constant(depth), lean, max(sizes, default=0.0) / 2.0), 0.0)
+        radius = max(sizes, default=0.0) / 2.0
+        return Built(figures.FaceStock(axial.plus_constant(depth), lean, radius), second_order(lean=lean, lever=radius))
     if before.diameter is None or after.diameter is None:
         return Open((f"setups.{after.op}.cut.{after.name}.to",))
     depth = (before.diameter - after.diameter) / 2.0 * (-1.0 if after.kind == "bore" else 1.0)
@@ -319,7 +323,8 @@ def stock_left(floor: Floor, key: str) -> Built | Open:
     offsets = tuple(after.axis_at(z) - before.axis_at(z) for z in heights)
     if missing := tuple(dict.fromkeys(m for o in offsets for m in o.undetermined())):
         return Open(missing)
-    return Built(figures.Stock(depth, offsets), 0.0)
+    left_out = second_order(lean=after.lean - before.lean, lever=after.diameter / 2.0)
+    return Built(figures.Stock(depth, offsets), left_out)
 
 
 _FIGURES: dict[str, Callable[[Floor, Stack], Built | Open]] = {

@@ -37,10 +37,10 @@ def material_of(floor: Floor, part: str) -> Material | Open:
     return _only_stated(given, stated)
 
 
-def expansion_of(name: str, path: str) -> Range | Open:
-    """Mean expansion of a worm or a housing by the name of its material [1/K]. Source: materials.yaml."""
+def material_named(name: str, path: str) -> Material | Open:
+    """The material of a worm or a housing, of which the job states the name alone. Source: materials.yaml."""
     found = material(name)
-    return found.heating if isinstance(found, Material) else Open((path,), found.because)
+    return found if isinstance(found, Material) else Open((path,), found.because)
 
 
 def porous(part: Part) -> bool | None:

@@ -15,6 +15,7 @@ from setupcheck.quantities.book import Answer, Book, Known, Open, Quantity, Scop
 from setupcheck.quantities.judged import Result
 from setupcheck.quantities.relations import Built
 from setupcheck.quantities.scopes import stack_of
+from setupcheck.quantities.validity import range_in_words
 from setupcheck.report.asked import find
 from setupcheck.report.causes import cause_in_words
 from setupcheck.report.formulas import FORMULAS, OF_A_STACK, formula_of
@@ -119,6 +120,9 @@ def _working(loaded: LoadedJob, book: Book, quantity: Quantity, scope: Scope) ->
         yield from _formula(OF_A_STACK[quantity.name])
     else:
         yield from _stated(book, quantity.of)
+    if quantity.unit:
+        what = stack_of(scope).require.what if scope.kind == "stack" else ""
+        yield from wrap(range_in_words(quantity.name, what), first="  ", rest="    ")
     for argument, name in quantity.inputs.items():
         yield from _input(loaded, book, scope, argument, name)
     if quantity.name == "stack.chance":

@@ -17,6 +17,9 @@ Direction = Literal["left", "right", "up", "down", "front", "back"]
 Lean = Literal["nose-up", "nose-down", "left", "right", "front", "back"]
 """Where the nose of the head goes when it is leaned: up, down, or swung aside."""
 
+LARGEST_ERROR = math.radians(10.0)
+"""Error of the tilt [rad] beyond which it is a wrong setting. Our screening choice; heads are set within minutes of arc."""
+
 Vector = tuple[int, int, int]
 
 VECTORS: dict[str, Vector] = {
@@ -208,6 +211,15 @@ def tilt_error(*, set_angle: float, needed_angle: float, head: float, shaft_angl
     )
 
 
+def is_an_error(tilt: float) -> None:
+    """Refuses an error of the tilt that is a wrong setting, beyond LARGEST_ERROR either way [rad]. Raises: ValueError."""
+    if not abs(tilt) <= LARGEST_ERROR:
+        raise ValueError(
+            f"a tilt error of {math.degrees(tilt):g} deg is beyond {math.degrees(LARGEST_ERROR):g} deg: check hand and "
+            f"direction first"
+        )
+
+
 def twist_over_face(error: float, *, face_width: float) -> float:
     """How far a flank runs off over the face for a tilt error [mm]: b tan(error), from one end to the other.
 
@@ -218,10 +230,7 @@ def twist_over_face(error: float, *, face_width: float) -> float:
     29.1
     """
     above_zero(face_width=face_width)
-    if not abs(error) <= math.radians(10.0):
-        raise ValueError(
-            f"a tilt error of {math.degrees(error):g} deg is beyond 10 deg: check hand and direction first"
-        )
+    is_an_error(error)
     return face_width * math.tan(abs(error))
 
 

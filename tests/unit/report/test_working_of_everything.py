@@ -32,5 +32,6 @@ def test_every_quantity_with_an_instance_shows_its_working(job: Path) -> None:
             assert said.startswith(quantity.name)
             assert max(map(len, said.splitlines())) <= 80
             assert "nan" not in said.split()
+            assert not quantity.unit or "  holds " in said
             shown += 1
     assert shown > 50
