@@ -29,6 +29,7 @@ from setupcheck.jobfile import (
     reach,
     sense,
     shapes,
+    sides,
     warmth,
 )
 from setupcheck.jobfile.asked import Require
@@ -188,6 +189,7 @@ def _contradictions(data: Mapping[str, Data], job: Job | None) -> Iterator[names
     for check in (
         counts.beyond,
         reach.beyond,
+        sides.wrong,
         directions.nowhere,
         joints.misfits,
         cuts.misstated,

@@ -5,7 +5,7 @@ from __future__ import annotations
 import pytest
 
 from setupcheck.jobfile.reading import read_job_text
-from tests.bad_input.ring import RING, refused, spoilt
+from tests.bad_input.ring import RING, refused, spoilt, told
 
 SURFACE = "      back: {kind: face, at: 0, facing: -z, diameter: 96}\n"
 
@@ -187,3 +187,55 @@ def test_what_stands_beside_its_surface_is_told_in_one_run_with_the_values_that_
 
 def test_a_steady_is_a_device() -> None:
     assert read_job_text(spoilt("by: three-jaw, at: 10", "by: steady, at: 10"), "job.yaml")
+
+
+TRUED, OTHER_PLANE = "by: three-jaw, at: -20", "by: three-jaw, at: 10"
+BORED = "by: spigot, clearance: [1 um, 3 um]"
+
+
+@pytest.mark.parametrize("mandrel", ["plain-mandrel", "taper-mandrel", "expanding-mandrel"])
+def test_a_mandrel_on_an_outside_is_refused(mandrel: str) -> None:
+    assert [
+        "23:29 setups.10.hold.centre.by | a mandrel goes into a bore, and bar is a cylinder. "
+        "Write four-jaw, three-jaw or collet for this outside, or name a bore"
+    ] == [told(p) for p in refused(spoilt(TRUED, f"by: {mandrel}, at: -20")).problems]
+    assert read_job_text(spoilt(BORED, f"by: {mandrel}"), "job.yaml")
+
+
+@pytest.mark.parametrize("device", ["collet", "pot-chuck", "vee-block", "steady"])
+def test_what_lies_round_an_outside_is_refused_in_a_bore(device: str) -> None:
+    assert [
+        f"30:30 setups.20.hold.centre.by | a {device} lies round an outside, and bore is a bore. "
+        "Write expanding-mandrel, four-jaw or three-jaw for this bore, or name an outside"
+    ] == [told(p) for p in refused(spoilt(BORED, f"by: {device}")).problems]
+    assert read_job_text(spoilt(TRUED, f"by: {device}, at: -20"), "job.yaml")
+
+
+def test_a_mandrel_on_teeth_is_refused_without_a_collet_to_take_instead() -> None:
+    assert [
+        "30:31 setups.20.hold.centre.by | a mandrel goes into a bore, and teeth is a toothing. "
+        "Write four-jaw or three-jaw for this outside, or name a bore"
+    ] == [told(p) for p in refused(spoilt(f"on: bore, {BORED}", "on: teeth, by: taper-mandrel")).problems]
+
+
+@pytest.mark.parametrize("device", ["three-jaw", "four-jaw", "soft-jaws", "shimmed-jaws", "spigot", "indicator"])
+def test_jaws_a_spigot_and_a_dial_hold_outside_and_in_a_bore(device: str) -> None:
+    assert read_job_text(spoilt(TRUED, f"by: {device}, at: -20"), "job.yaml")
+    assert read_job_text(spoilt(BORED, f"by: {device}"), "job.yaml")
+
+
+def test_a_taper_may_be_inside_or_outside_for_all_the_file_says() -> None:
+    cone = "cone: {kind: taper, diameter: 30, to_diameter: 31, from: 0, to: 30}"
+    for device in ("taper-mandrel", "collet"):
+        text = spoilt("on: bore, by: spigot, clearance: [1 um, 3 um]", f"on: cone, by: {device}", with_surfaces(cone))
+        assert read_job_text(text, "job.yaml")
+
+
+def test_a_second_plane_that_names_no_device_lies_in_that_of_the_first_and_is_told_at_its_surface() -> None:
+    text = spoilt(OTHER_PLANE, "at: 10", spoilt(TRUED, "by: expanding-mandrel, at: -20"))
+    assert ["setups.10.hold.centre.by", "setups.10.hold.and_centre.on"] == [p.path for p in refused(text).problems]
+
+
+def test_a_mandrel_on_an_outside_is_told_beside_the_values_that_are_wrong() -> None:
+    text = spoilt("runout: 3 um", "runout: 3", spoilt(TRUED, "by: expanding-mandrel, at: -20"))
+    assert ["setups.10.hold.centre.by", "setups.20.hold.centre.runout"] == [p.path for p in refused(text).problems]

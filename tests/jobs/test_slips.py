@@ -39,7 +39,7 @@ SLIPS: dict[tuple[str, str], tuple[Slip, ...]] = {
             GEAR,
             20,
             "centre: {on: bore, by: expanding-mandrel, at: 8, runout: 10 um}",
-            "centre: {on: teeth, by: expanding-mandrel, runout: 10 um}",
+            "centre: {on: teeth, by: soft-jaws, runout: 10 um}",
         ),
     ),
     ("DATUM-002", "trued on a surface that is gone"): (

@@ -74,8 +74,8 @@ require:
 
 RING = "by: indicator, runout: {measured: 2 um}"
 DISC = "by: indicator, runout: 2 um"
-LOOSE = "by: plain-mandrel, rests: free, clearance: [2 um, 2 um], runout: 0 um"
-HANGING = "by: plain-mandrel, rests: hanging, clearance: [2 um, 2 um], runout: 0 um"
+LOOSE = "by: spigot, rests: free, clearance: [2 um, 2 um], runout: 0 um"
+HANGING = "by: spigot, rests: hanging, clearance: [2 um, 2 um], runout: 0 um"
 
 PERCENTILES = {
     # steps: 50, 90, 95, 99 %

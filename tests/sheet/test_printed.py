@@ -13,6 +13,7 @@ import pytest
 
 from setupcheck.flow import review, vary
 from setupcheck.jobfile.changing import Change
+from setupcheck.jobfile.reading import read_job_text
 from setupcheck.report.sheet import as_sheet
 from setupcheck.shipped import shipped
 from tests.sheet import browser as chromium
@@ -66,6 +67,35 @@ def overflowing(driver: Any) -> list[str]:
         return found;
         """
     )
+
+
+@pytest.mark.parametrize("paper", chromium.PAPERS)
+def test_a_path_goes_on_in_the_next_line_between_its_words(driver: Any, tmp_path: Path, paper: str) -> None:
+    text = shipped("jobs/spur-gear-on-mandrel.yaml").read_text(encoding="utf-8")
+    assert text.count(", pressure_angle: 20 deg") == 1
+    text = text.replace(", pressure_angle: 20 deg", "")
+    file = tmp_path / "open.html"
+    file.write_text(as_sheet(review(read_job_text(text, "open.yaml"))), encoding="utf-8")
+    chromium.as_printed(driver, file, paper)
+    told, broken = driver.execute_script(
+        """
+        const broken = [], told = [];
+        for (const table of document.querySelectorAll('table.bad, table.said')) {
+          const walk = document.createTreeWalker(table, NodeFilter.SHOW_TEXT);
+          told.push(table.textContent);
+          while (walk.nextNode()) for (const word of walk.currentNode.data.matchAll(/[A-Za-z]{4,}/g)) {
+            const range = document.createRange();
+            range.setStart(walk.currentNode, word.index);
+            range.setEnd(walk.currentNode, word.index + word[0].length);
+            const lines = new Set([...range.getClientRects()].map(r => Math.round(r.top)));
+            if (lines.size > 1) broken.push(word[0]);
+          }
+        }
+        return [told.join(' '), broken];
+        """
+    )
+    assert "parts.gear.surfaces.teeth.pressure_angle" in told
+    assert [] == broken
 
 
 @pytest.mark.parametrize("name", JOBS)

@@ -6,18 +6,14 @@ shape, and the worst case of the review is a band. Positive: further counter-clo
 
 from __future__ import annotations
 
-import math
 from collections.abc import Callable, Iterator
 from dataclasses import replace
 from functools import partial
 from typing import TYPE_CHECKING
 
 from setupcheck.notation import FACTOR, show
-from setupcheck.quantities.book import INCH, Known, Open, Scope
-from setupcheck.quantities.judged import Result
-from setupcheck.quantities.relations import Built
+from setupcheck.quantities.book import INCH, Scope
 from setupcheck.quantities.scopes import stack_of
-from setupcheck.record import record
 from setupcheck.report.pictures import Picture
 from setupcheck.report.pictures.axes import (
     DASHES,
@@ -35,13 +31,12 @@ from setupcheck.report.pictures.axes import (
     told,
     upright,
 )
+from setupcheck.report.pictures.rings import SHARE, Figure, Planned, Shown, count_of, figure_of, measured, planned
 from setupcheck.report.svg import THICK, Point, line, number, picture, polyline, words
 from setupcheck.report.wording import clean
 
 if TYPE_CHECKING:
     from setupcheck.flow import ReadBack, Review
-    from setupcheck.ledger.account import Account
-    from setupcheck.ledger.figures import Tooth
 
 ASKED = (
     "cumulative-pitch",
@@ -56,195 +51,32 @@ ASKED = (
 """Requirements that speak of a ring's division, the nearest to what is drawn first."""
 LEFT, RIGHT, TOP, BOTTOM = 18.0, 160.0, 26.0, 72.0
 """Edges of the field [mm]. Our choice."""
-MOST_DRAWN = 2_000_000
-"""Places times draws that are looked at; of a larger ring fewer draws. Our choice, for the time it takes."""
-SHARE = 0.95
-"""Of the draws, place by place, within the dashed lines. Our choice, as the review's likely value."""
 MOST_MEASURED, MARK = 160, 1.4
 """Measured points drawn, of more the highest and lowest of each stretch; the size of their mark [mm]. Our choice."""
 LIMIT_WIDTH, DRAW = 0.7, 0.18
 """Line widths of the limit and of the one draw [mm]. Our choice."""
 
 
-@record(eq=False)
-class Planned:
-    """A ring as planned; arcs on its circle [mm].
-
-    kind    gap, hole or line;  worst  range of the worst case, None where open;  limit  of that range, None without
-    low, high  of each place what SHARE of the draws stay within;  one  a draw whose range is the likely one, and that range
-    missing what to fill;  gaps  what the gaps add within their pitch, which the worst case counts [mm]
-    """
-
-    name: str
-    kind: str
-    count: int
-    radius: float
-    worst: float | None
-    limit: float | None
-    low: tuple[float, ...]
-    high: tuple[float, ...]
-    one: tuple[float, ...]
-    likely: float
-    missing: tuple[str, ...]
-    gaps: float
-    title: str
-
-
-@record
-class Shown:
-    """A measured mean: place as a number round the ring, deviation and its uncertainty (k = 2) as arcs [mm], direction."""
-
-    place: float
-    value: float
-    uncertain: float
-    direction: int
-
-
 def offered(found: Review, read: ReadBack | None = None) -> Iterator[Picture]:
-    """One picture for each ring of teeth or holes whose division is asked about, named after the requirement it shows."""
+    """One picture for each ring of teeth or holes whose division is asked about, named after the requirement it shows.
+
+    None of a ring that is neither known as planned nor read: it would be axes with a scale that means nothing.
+    """
     rings: dict[str, list[Scope]] = {}
     for scope in found.book.instances("stack"):
         stack = stack_of(scope)
         if stack.require.what in ASKED and stack.of:
             rings.setdefault(_ring_of(found, stack.of), []).append(scope)
     for name, scopes in rings.items():
-        best = min(scopes, key=lambda s: ASKED.index(stack_of(s).require.what))
-        if _count(found, name) > 1:
+        known = [s for s in scopes if isinstance(figure_of(found, s), Figure)]
+        if count_of(found, name) > 1 and (known or measured(read, name)):
+            best = min(known or scopes, key=lambda s: ASKED.index(stack_of(s).require.what))
             n = stack_of(best).index + 1
             yield Picture(f"pitch-{n}", f"Cumulative pitch of {clean(name)}", partial(drawn, found, best, name, read))
 
 
 def _ring_of(found: Review, of: str) -> str:
     return str(replace(found.loaded.ref(of), op=None))
-
-
-def _count(found: Review, name: str) -> int:
-    ref = found.loaded.ref(name)
-    node = found.loaded.job.parts[ref.part].surfaces[ref.surface]
-    return int(getattr(node, "count", 1) or 1)
-
-
-def planned(found: Review, scope: Scope, name: str) -> Planned:
-    """The ring as planned: worst case of the review, and draws of it place by place."""
-    from setupcheck.ledger.running import AsItRuns
-
-    stack, ref = stack_of(scope), found.loaded.ref(name)
-    node = found.loaded.job.parts[ref.part].surfaces[ref.surface]
-    kind = {"teeth": "gap", "lines": "line"}.get(node.kind, "hole")
-    circle = getattr(node, "on_circle", None) or 0.0
-    title = f"Cumulative pitch of {name}, {_count(found, name)} {'teeth' if kind == 'gap' else f'{kind}s'}"
-    empty = Planned(name, kind, _count(found, name), circle / 2.0, None, None, (), (), (), 0.0, (), 0.0, title)
-    built = found.book.get("stack.built", scope)
-    if not isinstance(built, Known) or not isinstance(built.value, Built):
-        missing = (built.missing or (built.because,)) if isinstance(built, Open) else ()
-        return replace(empty, missing=missing)
-    figure = built.value.figure
-    ring = _as_ring(figure.ring if isinstance(figure, AsItRuns) else figure)
-    if ring is None:
-        return replace(empty, missing=("a pitch figure of this ring, as in what: gap-centre-pitch",))
-    result = found.results.get(scope.key)
-    asked = result is not None and stack.require.what not in ("single-pitch", "position", "chord")
-    if asked and isinstance(result, Result):
-        worst = result.combined.worst.high / ring.factor
-        limit = stack.high / ring.factor if stack.high is not None else None
-        gaps = figure.within_a_pitch() / ring.factor if isinstance(figure, AsItRuns) else 0.0
-    else:
-        whole = replace(ring, factor=1.0, stepwise=False)
-        worst, limit, gaps = whole.base() + sum(p.up for p in whole.pushes()), None, 0.0
-    low, high, one, likely = _drawn(found, ring)
-    return replace(
-        empty,
-        count=ring.pattern.count,
-        radius=ring.pattern.radius,
-        worst=worst,
-        limit=limit,
-        low=low,
-        high=high,
-        one=one,
-        likely=likely,
-        gaps=gaps,
-    )
-
-
-def _as_ring(figure: object) -> Tooth | None:
-    """The figure of the ring's places; of a position that of its holes round the circle."""
-    from setupcheck.ledger.figures import Tooth
-    from setupcheck.ledger.holes import HolePosition
-
-    if isinstance(figure, Tooth):
-        return figure
-    if isinstance(figure, HolePosition):
-        return Tooth(figure.offset, figure.pattern, flank=False, stepwise=False)
-    return None
-
-
-def _drawn(found: Review, ring: Tooth) -> tuple[tuple[float, ...], tuple[float, ...], tuple[float, ...], float]:
-    """(lower, upper) ends that SHARE of the draws stay within, one draw of the likely range, that range; arcs [mm].
-
-    The draws are those of the review, each cause from its own stream; of both flanks each draw counts with the one that
-    ranges farther, as the figure has it.
-    """
-    import numpy as np
-
-    from setupcheck.ledger import teeth
-    from setupcheck.ledger.combine import Draws
-
-    answer = found.book.get("route.draws", found.book.instances("job")[0])
-    draws = answer.value if isinstance(answer, Known) and isinstance(answer.value, Draws) else Draws()
-    some = max(200, min(draws.trials, MOST_DRAWN // ring.pattern.count))
-    places = teeth.angles(ring.pattern)
-    arcs = draws.arcs(ring.pattern)[:some]
-    best, widest = None, None
-    for side, account in sides_of(ring):
-        own = teeth.waves(draws.account(account)[:some] * -1j, places) + arcs
-        if side and (ring.pattern.outwards or any(s.goes_outward for s in ring.pattern.scatter)):
-            own = own + side * math.tan(ring.pattern.pressure_angle or 0.0) * draws.radials(ring.pattern)[:some]
-        top, bottom = own.max(axis=1), own.min(axis=1)
-        own = own - ((top + bottom) / 2.0)[:, None]
-        if best is None or widest is None:
-            best, widest = own, top - bottom
-        else:
-            best = np.where((top - bottom > widest)[:, None], own, best)
-            widest = np.maximum(widest, top - bottom)
-    assert best is not None and widest is not None, "a ring has at least one flank"
-    beyond = (1.0 - SHARE) / 2.0
-    low, high = np.quantile(best, [beyond, 1.0 - beyond], axis=0)
-    likely = float(np.quantile(widest, SHARE))
-    chosen = int(np.argmin(np.abs(widest - likely)))
-    return tuple(low.tolist()), tuple(high.tolist()), tuple(best[chosen].tolist()), float(widest[chosen])
-
-
-def sides_of(ring: Tooth) -> list[tuple[int, Account]]:
-    """The waves of the flanks that count: both of teeth with flanks, else the middle of the gap."""
-    sides = (1, -1) if ring.flank and ring.pattern.pressure_angle else (0,)
-    return [(side, ring.wave(side)) for side in sides]
-
-
-def measured(read: ReadBack | None, name: str) -> list[Shown]:
-    """The means of the test, if it is of this ring: each direction about the middle of its own highest and lowest.
-
-    Uncertain by twice the scatter of a reading over the root of their number: the readings alone, without the instrument.
-    Source: k = 2, JCGM 100:2008.
-    """
-    if read is None or read.of.name != name:
-        return []
-    of, found = read.of, []
-    for direction in sorted({m.direction for m in read.reduced.means}, reverse=True):
-        mine = [m for m in read.reduced.means if m.direction == direction]
-        values = [m.value for m in mine]
-        middle = (max(values) + min(values)) / 2.0
-        for m in mine:
-            pitches = of.turn * (m.theta - of.start) * of.count / math.tau
-            place = (
-                (pitches + (0.0 if of.holes else 0.5) + 1e-9) % of.count - 1e-9 + 0.5
-            )  # a ring's edge lies before its first
-            doubt = 2.0 * read.reduced.scatter / math.sqrt(m.readings)
-            found.append(
-                Shown(
-                    place, of.radius * (m.value - middle), of.radius * doubt if math.isfinite(doubt) else 0.0, direction
-                )
-            )
-    return sorted(found, key=lambda p: (-p.direction, p.place))
 
 
 def drawn(found: Review, scope: Scope, name: str, read: ReadBack | None) -> str:

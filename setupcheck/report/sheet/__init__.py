@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import re
 from functools import cache
 from pathlib import Path
 from typing import TYPE_CHECKING
@@ -15,6 +16,9 @@ if TYPE_CHECKING:
     from markupsafe import Markup
 
     from setupcheck.flow import ReadBack, Review
+
+BETWEEN_STEPS = re.compile(r"(?<=[\w\]][._])(?=[^\W\d])")
+"""Behind a dot or underscore between two words of a path, and in no number."""
 
 
 def as_sheet(found: Review, read: ReadBack | None = None) -> str:
@@ -36,6 +40,13 @@ def _coded(text: str) -> Markup:
     return Markup("").join(told)
 
 
+def _pathed(text: str) -> Markup:
+    """Text whose paths may go on in the next line behind a dot or an underscore, never within a word."""
+    from markupsafe import Markup
+
+    return Markup("<wbr>").join(BETWEEN_STEPS.split(text))
+
+
 @cache
 def _template() -> Template:
     """Text of the job reaches the page through autoescape alone; drawings escape what they hold themselves."""
@@ -46,4 +57,5 @@ def _template() -> Template:
     made = Environment(loader=here, autoescape=True, undefined=StrictUndefined, trim_blocks=True, lstrip_blocks=True)
     made.filters["drawn"] = lambda drawing: Markup(inline(drawing))
     made.filters["coded"] = _coded
+    made.filters["pathed"] = _pathed
     return made.get_template("sheet.html")

@@ -78,7 +78,8 @@ def centre(draw: st.DrawFn, on: str, at: float) -> Node:
         rests = draw(st.sampled_from(["free", "pushed", "hanging", "centred"]))
         return node | {"by": "spigot", "clearance": [draw(um(1, 4)), draw(um(5, 20))], "rests": rests}
     if how == "through":
-        return node | {"by": "taper-mandrel", "through": [{"by": "centres", "runout": draw(um(1, 9))}]}
+        by = "taper-mandrel" if on == "bore" else "fixture"  # a mandrel on an outside is refused
+        return node | {"by": by, "through": [{"by": "centres", "runout": draw(um(1, 9))}]}
     if how == "jaw":
         node["runout"] = {"measured": draw(um()), "high_at": "jaw 2", "device": "four-jaw-B", "mark": "kept"}
     return node | {"by": "four-jaw"}

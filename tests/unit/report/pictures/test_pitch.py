@@ -178,11 +178,23 @@ def test_small_and_large_rings_are_clear(count: int) -> None:
     assert shown
 
 
-def test_what_is_missing_is_said() -> None:
+def without_hand() -> Review:
+    """The wheel of an unknown lead: nothing of its division can be told."""
     text = WHEEL.read_text(encoding="utf-8").replace("  hand: right\n", "")
-    found = review(read_job_text(text, "no-hand.yaml"))
-    text = said(is_a_clear_picture(named(found, "pitch")["pitch-1"].draw()))
-    assert "open: fill worm.hand" in text and "worst case" not in text
+    return review(read_job_text(text, "no-hand.yaml"))
+
+
+def test_a_ring_of_which_nothing_can_be_told_has_no_picture() -> None:
+    from setupcheck.report.sheet import as_sheet
+
+    found = without_hand()
+    assert {} == named(found, "pitch")
+    assert "Cumulative pitch of" not in as_sheet(found) and "Cumulative pitch of" in as_sheet(judged(WHEEL))
+
+
+def test_what_is_missing_of_the_plan_is_said_beside_what_was_read(tmp_path: Path) -> None:
+    text = said(is_a_clear_picture(pictures(without_hand(), reading(tmp_path))["pitch-1"].draw()))
+    assert "open: fill worm.hand" in text and "worst case" not in text and "MEASURED" in text
 
 
 def test_a_ring_asked_for_its_steps_alone_has_no_limit() -> None:
