@@ -16,6 +16,7 @@ from functools import lru_cache
 import numpy as np
 from numpy.typing import NDArray
 
+from setupcheck.division.angles import once_round
 from setupcheck.physics.student_t import LARGEST_NU, t_quantile
 from setupcheck.record import record
 
@@ -67,7 +68,7 @@ def length_of(vector: Reals, covariance: Reals, nu: float, *, also: float = 0.0)
     turned = min((s_across / value) ** 2, 1.0) if value > 0.0 else 1.0  # `along` is only as sure as the direction read
     low, high = _ends(value, math.sqrt(s_along**2 * (1.0 - turned) + s_across**2 * turned), s_across)
     low, high = max(float(low) - also, 0.0), float(high) + also
-    direction = float(np.arctan2(vector[1], vector[0])) % math.tau
+    direction = once_round(float(np.arctan2(vector[1], vector[0])))
     within = _within(vector, covariance, t) if low > 0.0 else None
     if within is not None and also > 0.0:
         within = within + math.asin(also / value) if also < value else None

@@ -10,6 +10,7 @@ from __future__ import annotations
 import math
 from collections.abc import Mapping
 
+from setupcheck.division.angles import once_round
 from setupcheck.division.prove_out import angle_of, gap_at, inverse_of
 from setupcheck.record import record
 
@@ -43,8 +44,7 @@ class Wave:
     @property
     def loosest(self) -> float:
         """Where the wave is highest, counted from gap 1 [rad]."""
-        angle = math.atan2(self.y, self.x) % math.tau
-        return angle if math.tau - angle > 1e-9 else 0.0  # noise below zero is gap 1, not a whole turn
+        return once_round(math.atan2(self.y, self.x))
 
     def spread_at(self, angle: float) -> float:
         """Uncertainty of the wave at one place over that of a reading: sqrt(v N^-1 v), v = (1, cos, sin).

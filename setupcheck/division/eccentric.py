@@ -20,6 +20,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from setupcheck.division.amplitude import t_at
+from setupcheck.division.angles import once_round
 from setupcheck.division.design import Term
 from setupcheck.division.fit import Fit
 from setupcheck.division.points import Points
@@ -75,7 +76,7 @@ def eccentric(
     lean = 0.0 if both or alpha is None else side * alpha
     slack = 0.0 if both or side else alpha or 0.0
     factor = wheel.radius * (1.0 if both or alpha is None else math.cos(alpha))
-    direction = (wave.length.direction + math.pi / 2.0 + lean) % math.tau
+    direction = once_round(wave.length.direction + math.pi / 2.0 + lean)
     within = wave.length.within
     return Eccentric(
         Interval(factor * wave.length.value, factor * wave.length.low, factor * wave.length.high),
@@ -101,7 +102,7 @@ def apart(flanks: Flanks | None, off: Eccentric | None, wheel: Wheel, nu: float)
     spread = 2.0 * math.tan(wheel.pressure_angle)
     own = np.array([d, -c]) / spread
     variance = max(flanks.covariance[2][2], flanks.covariance[3][3]) / spread**2
-    direction = math.atan2(own[0], -own[1]) % math.tau
+    direction = once_round(math.atan2(own[0], -own[1]))
     rest = np.array([a, b]) - own
     return Apart(
         wheel.radius * float(np.hypot(*own)),
@@ -109,7 +110,7 @@ def apart(flanks: Flanks | None, off: Eccentric | None, wheel: Wheel, nu: float)
         direction,
         wheel.tooth(direction),
         float(np.hypot(*rest)),
-        math.atan2(rest[1], rest[0]) % math.tau,
+        once_round(math.atan2(rest[1], rest[0])),
     )
 
 

@@ -11,6 +11,7 @@ from __future__ import annotations
 import math
 from collections.abc import Mapping
 
+from setupcheck.division.angles import once_round
 from setupcheck.record import record
 
 FEWEST = 3
@@ -43,7 +44,7 @@ class Ring:
     @property
     def direction(self) -> float:
         """Direction of the gap that stands farthest out, counted from gap 1 in the order of cutting, 0 .. 2 pi [rad]."""
-        return math.atan2(self.y, self.x) % math.tau
+        return once_round(math.atan2(self.y, self.x))
 
 
 def angle_of(gap: float, count: int) -> float:
@@ -52,12 +53,12 @@ def angle_of(gap: float, count: int) -> float:
 
 
 def gap_at(angle: float, count: int) -> float:
-    """The other way: which gap stands at an angle, 1 .. count + 1, with decimals between two of them.
+    """The other way: which gap stands at an angle, from 1 to below count + 1, with decimals between two of them.
 
     >>> round(gap_at(math.radians(180.0), 72), 6)
     37.0
     """
-    return 1.0 + (angle % math.tau) / math.tau * count
+    return 1.0 + once_round(angle) / math.tau * count
 
 
 def gaps_to_cut(count: int) -> tuple[int, ...]:

@@ -72,6 +72,7 @@ def divided(
     op: int,
     name: str,
     worm_ratio: int | None,
+    ratio_at: str,
     turn: int,
     on_table: bool = False,
     holes: bool = True,
@@ -80,6 +81,7 @@ def divided(
 
     No `divide` entry: the division is undetermined, unless there is only one place. An entry without any error of the
     device takes the typical ones of its way of dividing.
+    ratio_at  the key that states `worm_ratio`, or would
     on_table  holes or slots under the spindle of a rotary table, which stands somewhere over its axis
     holes     holes or slots, which coordinates can set; teeth by x-y are undetermined
     """
@@ -93,7 +95,7 @@ def divided(
             if not has_own_errors(divide) and (holes or divide.by != "x-y"):
                 key = "x" if divide.by == "x-y" else "wheel" if divide.by in HAS_WHEEL else "setting"
                 found.unknown(": error of the device", f"{found.path}.{key}")
-        _of_the_device(found, divide, worm_ratio)
+        _of_the_device(found, divide, worm_ratio, ratio_at)
         _of_the_sight(found, divide)
         _of_the_bar(found, divide)
         if divide.by == "x-y" and holes:
@@ -121,7 +123,7 @@ def has_own_errors(divide: Divide) -> bool:
     return any(getattr(divide, key) is not None for key in OWN_ERRORS)
 
 
-def _of_the_device(found: _Errors, divide: Divide, worm_ratio: int | None) -> None:
+def _of_the_device(found: _Errors, divide: Divide, worm_ratio: int | None, ratio_at: str) -> None:
     """Wheel, worm, setting, clamp, step; notches, teeth or sides, each off for itself.
 
     A theodolite's circle: read on both faces its once per turn cancels, the two readings being opposite; on mixed faces it
@@ -133,7 +135,7 @@ def _of_the_device(found: _Errors, divide: Divide, worm_ratio: int | None) -> No
         if divide.by == "theodolite" and waves == 1 and divide.faces == "mixed":
             found.each(f"{what} on either face", amplitude, key, either=True)
         elif waves is None:
-            found.unknown(f": {what}", f"setups.{found.op}.machine")
+            found.unknown(f": {what}", ratio_at)
         else:
             found.wave(what, amplitude, waves, key)
     found.each("setting", divide.setting, "setting")

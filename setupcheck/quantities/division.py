@@ -8,7 +8,7 @@ from setupcheck.jobfile.setups import Setup
 from setupcheck.ledger.teeth import folded
 from setupcheck.quantities.book import Known, Open, Quantity, in_range
 from setupcheck.quantities.dividing import typical_errors
-from setupcheck.quantities.route import machine_of
+from setupcheck.quantities.route import machine_of, ratio_at
 from setupcheck.quantities.shop import Floor
 
 
@@ -26,9 +26,9 @@ def worm_ratio(floor: Floor, setup: Setup) -> int | Open | None:
     """Turns of the crank for one turn of the spindle; None where nothing is divided. Source: the job file's record."""
     if count(floor, setup) is None:
         return None
-    _, machine = machine_of(floor.loaded, setup)
+    called, machine = machine_of(floor.loaded, setup)
     if machine is None or machine.worm_ratio is None:
-        return Open((f"machines.{setup.machine}.worm_ratio" if machine is not None else f"setups.{setup.op}.machine",))
+        return Open((ratio_at(setup.op, called, machine),))
     return machine.worm_ratio
 
 

@@ -74,6 +74,11 @@ def machine_of(loaded: LoadedJob, setup: Setup) -> tuple[str | None, Machine | N
     return name, found
 
 
+def ratio_at(op: int, called: str | None, machine: Machine | None) -> str:
+    """The key that states the ratio, or would: that of the machine, or first of all which machine it is."""
+    return f"machines.{called}.worm_ratio" if machine is not None else f"setups.{op}.machine"
+
+
 def _hold_and_cut(floor: Floor, setup: Setup) -> None:
     first = floor.loaded.ref(next(iter(setup.cut)), setup.part)
     part = setup.part if setup.part is not None else first.part
@@ -131,7 +136,7 @@ def _cut(floor: Floor, held: Held, placing: Placing, name: str, cut: Cut) -> Non
         assert fresh is not None
         start = floor.sense(ref.part) * fresh.start + (floor.mark(ref.part) or 0.0)
         fresh = replace(fresh, start=start)
-        _, machine = machine_of(loaded, setup)
+        called, machine = machine_of(loaded, setup)
         on_table = node.kind in ("holes", "slot", "lines") and machine is not None and machine.kind == "rotary-table"
         pattern = divided(
             fresh,
@@ -141,6 +146,7 @@ def _cut(floor: Floor, held: Held, placing: Placing, name: str, cut: Cut) -> Non
             name=name,
             turn=placing.sg,
             worm_ratio=machine.worm_ratio if machine is not None else None,
+            ratio_at=ratio_at(op, called, machine),
             on_table=on_table,
             holes=node.kind in ("holes", "slot", "lines"),
         )

@@ -155,7 +155,7 @@ def _finding(found: Review, alike: Sequence[Finding], rules: str) -> Iterator[st
     finding = alike[0]
     lines = [f"line {one.line}" if one.line else "" for one in alike]
     places = [", ".join(p for p in (clean(one.at) or "job", n) if p) for one, n in zip(alike, lines, strict=True)]
-    yield from wrap(f"{finding.verdict}  {rules}  {'; '.join(places)}", first="  ", rest="        ")
+    yield from wrap(f"{finding.verdict}  {rules}  {'; '.join(dict.fromkeys(places))}", first="  ", rest="        ")
     yield from wrap(clean(finding.message) + "." + _margin(finding), first="      ", rest="      ")
     if finding.verdict == "pass":
         yield from _rests_on(finding)

@@ -55,9 +55,13 @@ def cannot_tell(missing: tuple[str, ...], because: str) -> str:
 
     >>> cannot_tell(("setups.30.hold.centre.runout",), "")
     'cannot tell: fill setups.30.hold.centre.runout'
+    >>> cannot_tell(("wheel.bore", "wheel.face"), "the ring is read off its axis")
+    'cannot tell: fill wheel.bore (and 1 more); the ring is read off its axis'
     """
     if not missing:
         return f"cannot tell: {because or 'the number is not there'}"
     others = f" (and {len(missing) - 1} more)" if len(missing) > 1 else ""
-    reason = f": {because}" if because else ""
+    reason = (
+        f"; {because}" if because else ""
+    )  # beside the key, not its ground: the two may come from different entries
     return f"cannot tell: fill {missing[0]}{others}{reason}"

@@ -49,6 +49,7 @@ SLIPS = (
 SAID_OF_SLIPS = ("CUTTER-003", "HEAT-001", "PLACE-001", "TILT-002")
 
 
+@cache
 def reports() -> dict[str, str]:
     """File name -> text of every golden report."""
     found = {f"{job.stem}.txt": as_text(review(job)) for job in sorted((ROOT / "jobs").glob("*.yaml"))}
@@ -61,6 +62,7 @@ def reports() -> dict[str, str]:
     return found
 
 
+@cache
 def drawings() -> dict[str, str]:
     """File name -> SVG of every golden drawing."""
     return {"vary-range.svg": as_drawing(swept()), **route_pictures(), **pictures_of_heat_and_pitch()}
@@ -196,6 +198,7 @@ def excerpts() -> dict[str, str]:
     }
 
 
+@cache
 def pages_with_excerpts() -> dict[str, str]:
     """The pages that hold excerpts, README first, with these put in; each stands in one of them, once."""
     texts = {page: (ROOT / page).read_text(encoding="utf-8") for page in EXCERPTS_IN}

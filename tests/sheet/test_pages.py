@@ -10,8 +10,9 @@ from setupcheck.flow import Review
 from setupcheck.report.sheet import as_sheet
 from setupcheck.report.sheet.boxes import Row
 from setupcheck.report.sheet.pages import Operation, sheet_of
+from setupcheck.report.text import as_text
 from setupcheck.shipped import shipped
-from tests.unit.report.sample import PLATE, WHEEL, changed, reviewed
+from tests.unit.report.sample import PLATE, WHEEL, changed, flat, reviewed
 
 HUB = shipped("jobs/coupling-hub.yaml").read_text(encoding="utf-8")
 FAILING = shipped("jobs/mistakes/hidden-chuck-run-out.yaml").read_text(encoding="utf-8")
@@ -73,6 +74,13 @@ def box(text: str, op: int, key: str) -> Row:
 )  # fmt: skip
 def test_a_cut_says_the_size_it_goes_to(text: str, op: int, surface: str, says: str) -> None:
     assert said(page(text, op).cuts)[surface].startswith(says)
+
+
+def test_a_cut_that_meets_no_metal_says_what_is_missing() -> None:
+    """Of 0.30 mm on the radius 0.28 are met: 10 to 20 um go off the axis. Of 0.01 mm they leave none, and up to 10 um lack."""
+    thin = changed(WHEEL, ("hub:    {leave_on_diameter: 0.6}", "hub:    {leave_on_diameter: 0.02}"))
+    assert "0.28 mm of stock" in said(page(WHEEL, 30).cuts)["hub"]
+    assert "meets no metal at its worst place: up to 0.01 mm are missing" in said(page(thin, 30).cuts)["hub"]
 
 
 def test_the_drawing_and_the_words_give_one_size() -> None:
@@ -188,6 +196,13 @@ def test_what_is_missing_is_named_and_keeps_the_sheet_from_the_machine() -> None
     assert page(OPEN, 30).shares == () or all("position" not in s.title for s in page(OPEN, 30).shares)
 
 
+def test_an_entry_left_out_is_to_be_written() -> None:
+    """A dash in the column of what to do would read as if there were nothing to do."""
+    (row,) = sheet_of(told(changed(WHEEL, ("confidence: 95 %\n", "")))).troubles
+    assert ("open", "ENTRY-001", "Write it") == (row.verdict, row.rule, row.remedy)
+    assert ("confidence",) == tuple(at for at, _ in row.places)
+
+
 def test_a_job_that_asks_for_nothing_still_has_its_pages() -> None:
     sheet = sheet_of(told(NOTHING_ASKED))
     assert "OPEN" == sheet.verdict
@@ -253,3 +268,15 @@ def test_open_findings_that_wait_for_the_same_thing_stand_in_one_row() -> None:
     rows = [one for one in sheet_of(found).troubles if one.remedy == "Fill setups.50.join.heat.hub"]
     assert waiting == {rule for one in rows for rule in one.rule.split(", ")}
     assert len(rows) < len(waiting)
+
+
+def test_a_head_without_its_ratio_is_asked_for_it_and_one_place_is_named_once() -> None:
+    """Everything that divides waits for one figure: the worm and the wheel of the head cannot be laid round the work without."""
+    found = told(changed(WHEEL, ("worm_ratio: 40, ", "")))
+    waiting = [f for f in found.evaluation.findings if f.verdict == "open"]
+    assert {("machines.dividing-head-B.worm_ratio",)} == {f.missing for f in waiting}
+    assert {"STACK-001", "DIVIDE-001", "DIVIDE-002"} <= {f.rule for f in waiting}
+    (row,) = [one for one in sheet_of(found).troubles if one.rule.startswith("DIVIDE-001, DIVIDE-002")]
+    assert ["setups.40"] == [at for at, _ in row.places]
+    report = flat(as_text(found))
+    assert 1 == report.count("DIVIDE-016 setups.40, line") and "line 92; setups.40" not in report

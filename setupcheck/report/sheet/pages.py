@@ -139,7 +139,7 @@ def _troubles(found: Review, op: int | None = None) -> list[Trouble]:
         Trouble(
             alike[0].verdict,
             rules,
-            tuple((paper(f.at or "job", 80), f.line) for f in alike),
+            tuple(dict.fromkeys((paper(f.at or "job", 80), f.line) for f in alike)),
             paper(_said(alike[0]), 400),
             paper(_do(found, alike[0]), 400),
         )
@@ -163,7 +163,7 @@ def _house(found: Review) -> tuple[Said, ...]:
 def _do(found: Review, finding: Finding) -> str:
     """What to do about a finding; empty where the rule book knows nothing."""
     if is_the_entry(finding):
-        return remedy_in_words(found, finding) or ""
+        return remedy_in_words(found, finding) or "Write it"
     if finding.verdict == "open" and finding.missing:
         return f"Fill {', '.join(finding.missing[:4])}"
     if finding.verdict == "waived":

@@ -41,8 +41,18 @@ class Showing:
 
     def stock(self, value: float) -> str:
         """Stock that is left somewhere, never said to be more than it is."""
-        unit, steps, digits = ("in", 1000.0 / 25.4, 3) if self.inches else ("mm", 100.0, 2)
+        unit, steps, digits = self._stock
         return show(math.floor(value * steps + 1e-9) / steps, unit, digits)
+
+    def missing(self, value: float) -> str:
+        """Stock that is missing somewhere, never said to be less than it is."""
+        unit, steps, digits = self._stock
+        return show(math.ceil(value * steps - 1e-9) / steps, unit, digits)
+
+    @property
+    def _stock(self) -> tuple[str, float, int]:
+        """Unit, steps in a mm, digits."""
+        return ("in", 1000.0 / 25.4, 3) if self.inches else ("mm", 100.0, 2)
 
     def angle(self, value: float) -> str:
         """An angle that is set, in all three spellings, so that nobody converts at the machine."""

@@ -170,7 +170,11 @@ class Words:
         scope = next(s for s in self.found.book.instances("cut") if s.key == f"{setup.op}/{name}")
         stock = self.found.book.get("allow.least_stock", scope)
         if isinstance(stock, Known):
-            yield f"meets at least {self.show.stock(float(stock.value))} of stock"  # type: ignore[arg-type]
+            left = float(stock.value)  # type: ignore[arg-type]
+            if left < 0.0:
+                yield f"meets no metal at its worst place: up to {self.show.missing(-left)} are missing"
+            else:
+                yield f"meets at least {self.show.stock(left)} of stock"
         elif isinstance(stock, Open) and stock.missing:
             yield f"stock it meets: fill {paper(stock.missing[0], 80)}"
         if cut.removes:

@@ -8,7 +8,7 @@ import numpy as np
 import pytest
 
 from setupcheck.division.backlash_wave import FEWEST, WIDEST, Wave, fitted, nearest_gap, widest_stretch
-from setupcheck.division.prove_out import FLAT, gaps_to_cut, inverse_of, off_the_quarters, reduce
+from setupcheck.division.prove_out import FLAT, Ring, gap_at, gaps_to_cut, inverse_of, off_the_quarters, reduce
 
 
 def test_the_inverse_of_three_by_three_is_numpys() -> None:
@@ -45,6 +45,14 @@ def test_gaps_to_cut_and_rings_by_hand() -> None:
         assert (uneven.along, uneven.across) == pytest.approx(
             (math.sqrt(covariance[1, 1]), math.sqrt(covariance[2, 2]))
         )
+
+
+def test_a_ring_that_stands_out_at_its_first_gap_does_so_at_gap_1_and_not_a_turn_on() -> None:
+    """A rounding error below zero, as least squares leave it, is no whole turn."""
+    ring = Ring(0.0, 0.010, -1e-19, 0.5, 0.5, None)
+    assert ring.direction == 0.0
+    assert gap_at(ring.direction, 72) == gap_at(-1e-19, 72) == 1.0
+    assert Ring(0.0, 0.0, -0.010, 0.5, 0.5, None).direction == pytest.approx(1.5 * math.pi)
 
 
 def test_a_backlash_by_hand() -> None:
