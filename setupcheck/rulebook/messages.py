@@ -51,7 +51,7 @@ def shown_pair(value: float, limit: float | tuple[float, float], *, unit: str, d
 
 
 def cannot_tell(missing: tuple[str, ...], because: str) -> str:
-    """The message of an open finding: the one key to fill, else the reason.
+    """The message of an open finding: the one key to fill, and the reason beside it, which may come of another entry.
 
     >>> cannot_tell(("setups.30.hold.centre.runout",), "")
     'cannot tell: fill setups.30.hold.centre.runout'
@@ -61,7 +61,5 @@ def cannot_tell(missing: tuple[str, ...], because: str) -> str:
     if not missing:
         return f"cannot tell: {because or 'the number is not there'}"
     others = f" (and {len(missing) - 1} more)" if len(missing) > 1 else ""
-    reason = (
-        f"; {because}" if because else ""
-    )  # beside the key, not its ground: the two may come from different entries
+    reason = f"; {because}" if because else ""
     return f"cannot tell: fill {missing[0]}{others}{reason}"

@@ -161,9 +161,9 @@ def _house(found: Review) -> tuple[Said, ...]:
 
 
 def _do(found: Review, finding: Finding) -> str:
-    """What to do about a finding; empty where the rule book knows nothing."""
+    """What to do about a finding, the entry itself named beside it; empty where the rule book knows nothing."""
     if is_the_entry(finding):
-        return remedy_in_words(found, finding) or "Write it"
+        return "Write it"
     if finding.verdict == "open" and finding.missing:
         return f"Fill {', '.join(finding.missing[:4])}"
     if finding.verdict == "waived":
