@@ -39,7 +39,7 @@ from setupcheck.jobfile.reading import LoadedJob, read_job
 from setupcheck.quantities.book import Book, Known, Open, Scope
 from setupcheck.quantities.facts import UnknownFact, facts_of
 from setupcheck.quantities.gates import Gate, gates
-from setupcheck.quantities.judged import Result, let_go_of_older
+from setupcheck.quantities.judged import Result
 from setupcheck.quantities.route import walk
 from setupcheck.quantities.scopes import scopes
 from setupcheck.quantities.shop import Floor
@@ -148,7 +148,6 @@ def review(
     waivers, answers = _waivers(loaded), _answers(loaded)
     found = evaluate(book_of_rules, book, facts_on(floor), house=own, waivers=waivers, answers=answers, on=on)
     results = stack_results(book)
-    let_go_of_older(book)
     return Review(
         loaded,
         floor,

@@ -15,6 +15,8 @@ STRIDES = (0.25, 0.5, 1.0, 2.0, 4.0, 8.0, 16.0, 32.0)
 """How far from its plan a value is tried, in what the plan allows of it. Source: our screening choice."""
 FINEST = {"size": 5e-5, "error": 5e-5, "most": 5e-5, "angle": 5e-6, "heat": 0.2, "time": 0.1}
 """How close an end is found [mm, rad, degC, s]: finer than the box is filled in. Source: our choice."""
+SHORT_OF_IT = 1e-6
+"""How far on the good side of where the margins put an end it is tried, in FINEST: beyond rounding. Source: our choice."""
 KEEPS_TO_PLAN = "HOLD-007"
 """A reading above its plan is to be trued again. Where a requirement hears of it, the range says how far it may go even so."""
 NO_ROUTE = "no route"
@@ -22,6 +24,8 @@ NO_ROUTE = "no route"
 
 Bad = Callable[[float], tuple[str, ...]]
 """From a value to what says worse of it than it may: ids of rules, keys of requirements."""
+Crossing = Callable[[float, float], float | None]
+"""From a value that does and one that does not to where, by their margins, the turn between them should lie."""
 
 
 @record
@@ -80,8 +84,11 @@ def allowed(found: Review, entry: Entry) -> Allowed:
     inside = next((value for value in (*_outwards(entry), *towards) if not bad(value)), None)
     if inside is None:
         return replace(free, low=math.nan, high=math.nan, by_low=bad(entry.planned))
-    low, by_low = _end(bad, inside, entry, -1.0)
-    high, by_high = _end(bad, inside, entry, 1.0)
+    def crossing(good: float, worse: float) -> float | None:
+        return _crossing(trial, turning, good, worse)
+
+    low, by_low = _end(bad, crossing, inside, entry, -1.0)
+    high, by_high = _end(bad, crossing, inside, entry, 1.0)
     return replace(free, low=low, high=high, by_low=by_low, by_high=by_high)
 
 
@@ -133,7 +140,9 @@ def _outwards(entry: Entry) -> Iterator[float]:
             yield max(entry.planned + way * stride * entry.stride, entry.least)
 
 
-def _end(bad: Bad, inside: float, entry: Entry, way: float) -> tuple[float, tuple[str, ...]]:
+def _end(
+    bad: Bad, crossing: Crossing, inside: float, entry: Entry, way: float
+) -> tuple[float, tuple[str, ...]]:
     """The last value that way of which nothing says worse, and what does so beyond it."""
     good = inside
     if inside == entry.planned and not bad(max(inside + way * STRIDES[-1] * entry.stride, entry.least)):
@@ -143,12 +152,39 @@ def _end(bad: Bad, inside: float, entry: Entry, way: float) -> tuple[float, tupl
         if there < entry.least:
             break
         if by := bad(there):
-            while abs(there - good) > FINEST[entry.kind]:
-                half = (good + there) / 2.0
-                if said := bad(half):
-                    there, by = half, said
-                else:
-                    good = half
-            return good, by
+            return _closed_in(bad, crossing, (good, there), by, FINEST[entry.kind])
         good = there
     return way * math.inf, ()
+
+
+def _crossing(trial: Trial, turning: Sequence[Key], good: float, worse: float) -> float | None:
+    """Where the chord of the first margin to run out meets zero; margins of worst cases are straight over long pieces."""
+    here, there = trial.at(good) or {}, trial.at(worse) or {}
+    shares = []
+    for key in turning:
+        inside, outside = (said[key].margin if key in said else None for said in (here, there))
+        if inside is not None and outside is not None and inside >= 0.0 > outside:
+            shares.append(inside / (inside - outside))
+    return good + (worse - good) * min(shares) if shares else None
+
+
+def _closed_in(
+    bad: Bad, crossing: Crossing, between: tuple[float, float], by: tuple[str, ...], finest: float
+) -> tuple[float, tuple[str, ...]]:
+    """The turn between a value that does and one that does not: on either side of where the margins put it, else by halves."""
+    good, there = between
+    while (width := abs(there - good)) > finest:
+        step = math.copysign(finest, there - good)
+        guess = crossing(good, there)
+        for value in (*(() if guess is None else (guess - SHORT_OF_IT * step, guess + 0.9 * step)), None):
+            if value is None:
+                if abs(there - good) <= width / 2.0:
+                    break
+                value = (good + there) / 2.0
+            if not min(good, there) < value < max(good, there):
+                continue
+            if said := bad(value):
+                there, by = value, said
+            else:
+                good = value
+    return good, by

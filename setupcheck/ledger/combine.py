@@ -8,7 +8,11 @@ shown and never judged.
 from __future__ import annotations
 
 import math
-from collections.abc import Sequence
+from collections import deque
+from collections.abc import Callable, Sequence
+from functools import cache, partial
+from typing import ClassVar
+from weakref import ref
 
 import numpy as np
 from numpy.typing import NDArray
@@ -27,12 +31,19 @@ TRIALS = 20_000
 """Trials of one Monte Carlo run: about 1e4/(1 - p) asks for 2e5 at 95 % (JCGM 101 7.2.2); a tenth of it settles the
 chance within 0.2 %, and the sampling error is printed. Source: our screening choice."""
 
+DRAWS_KEPT = 4
+"""Of how many `Draws` the values stay in memory, 10 MB each: a change is held against what was before it, and what was measured
+against its plan. Source: our choice."""
+
 
 class Draws:
     """Random values of causes, drawn once each, every cause from its own stream named after it.
 
-    Single precision: a draw of an error is good to 1e-7 of itself; nominal lengths are added in double precision.
+    Single precision: a draw of an error is good to 1e-7 of itself; nominal lengths are added in double precision. Values of the
+    latest few stay in memory; those of others are drawn anew when somebody asks, and are the same.
     """
+
+    _filled: ClassVar[deque[ref[Draws]]] = deque()
 
     def __init__(self, trials: int = TRIALS) -> None:
         self.trials = trials
@@ -46,6 +57,14 @@ class Draws:
         for held in (self._causes, self._arcs, self._radials, self.memo):
             held.clear()
 
+    def _let_go_of_older(self) -> None:
+        """Those that were filled first make room: a list of reviews would fill the memory with what is seldom asked."""
+        self._filled.append(ref(self))
+        while len(self._filled) > DRAWS_KEPT:
+            older = self._filled.popleft()()
+            if older is not None:
+                older.forget()
+
     @staticmethod
     def stream(name: str) -> np.random.Generator:
         """The stream of random numbers that belongs to a name, the same on every machine."""
@@ -55,6 +74,8 @@ class Draws:
         """X of one cause, shape (trials,)."""
         found = self._causes.get(cause)
         if found is None:
+            if not self._causes:
+                self._let_go_of_older()
             found = self._causes[cause] = self._draw(cause)
             if cause.mean:
                 found += _single(cause.mean.real) if cause.is_real else np.complex64(cause.mean)
@@ -262,20 +283,52 @@ class Share:
 
 
 @record
-class Combined:
-    """One figure, combined. All in the figure's base unit; `chance` is None where no limit is stated.
+class Drawn:
+    """What the draws say of a figure, in its base unit; `chance` is None where no limit is stated."""
 
-    base  the figure with every cause at its known value
+    likely: Ends
+    chance: float | None
+    chance_error: float | None
+
+
+@record(eq=False)
+class Combined:
+    """One figure, combined. All in the figure's base unit.
+
+    base   the figure with every cause at its known value
+    drawn  what the draws say, made when it is first asked for: they take longer than all the rest
+    Equal where all figures are, those of the draws too.
     """
 
     worst: Ends
     rss: Ends
-    likely: Ends
-    chance: float | None
-    chance_error: float | None
     base: float
     shares: tuple[Share, ...]
     end: str
+    drawn: Callable[[], Drawn]
+
+    def __eq__(self, other: object) -> bool:
+        return isinstance(other, Combined) and self._figures() == other._figures()
+
+    __hash__ = None  # type: ignore[assignment]
+
+    def _figures(self) -> tuple[object, ...]:
+        return self.worst, self.rss, self.base, self.shares, self.end, self.drawn()
+
+    @property
+    def likely(self) -> Ends:
+        """Value not passed with the probability asked for."""
+        return self.drawn().likely
+
+    @property
+    def chance(self) -> float | None:
+        """Probability of meeting the limits; None where none is stated."""
+        return self.drawn().chance
+
+    @property
+    def chance_error(self) -> float | None:
+        """Standard sampling error of the chance."""
+        return self.drawn().chance_error
 
 
 def combine(figure: Figure, draws: Draws, *, low: float | None, high: float | None, confidence: float) -> Combined:
@@ -297,6 +350,18 @@ def combine(figure: Figure, draws: Draws, *, low: float | None, high: float | No
     rss = Ends(0.0, math.hypot(known, above))
     if figure.signed:  # known swings that cancel leave less than the root of their squares
         rss = Ends(max(known - below, worst.low), min(known + above, worst.high))
+    total = sum(_towards(p, towards_high) for p in pushes) or 1.0
+    shares = sorted(
+        (Share(p.cause, _towards(p, towards_high), _towards(p, towards_high) / total) for p in pushes),
+        key=lambda s: (-s.worst, s.cause.key),
+    )
+    drawn = cache(partial(_drawn, figure, draws, worst, low=low, high=high, confidence=confidence))
+    return Combined(worst, rss, base, tuple(shares), "high" if towards_high else "low", drawn)
+
+
+def _drawn(
+    figure: Figure, draws: Draws, worst: Ends, *, low: float | None, high: float | None, confidence: float
+) -> Drawn:
     values = np.atleast_2d(figure.sample(draws))  # one row, or the least and the largest of a turn
     least, most = values[0], values[-1]
     beyond = 1.0 - confidence
@@ -305,13 +370,7 @@ def combine(figure: Figure, draws: Draws, *, low: float | None, high: float | No
     ordered = np.sort(values, axis=1)
     low_end, high_end = _quantile(ordered[0], beyond), _quantile(ordered[-1], 1.0 - beyond)
     likely = Ends(worst.within(low_end) if figure.signed else 0.0, worst.within(high_end))
-    chance, error = _chance(least, most, worst, low, high)
-    total = sum(_towards(p, towards_high) for p in pushes) or 1.0
-    shares = sorted(
-        (Share(p.cause, _towards(p, towards_high), _towards(p, towards_high) / total) for p in pushes),
-        key=lambda s: (-s.worst, s.cause.key),
-    )
-    return Combined(worst, rss, likely, chance, error, base, tuple(shares), "high" if towards_high else "low")
+    return Drawn(likely, *_chance(least, most, worst, low, high))
 
 
 def _quantile(ordered: Reals, share: float) -> float:

@@ -2,15 +2,12 @@
 
 from __future__ import annotations
 
-from collections import deque
-from collections.abc import Iterable
 from dataclasses import replace
-from weakref import ref
 
 from setupcheck.jobfile.reading import LoadedJob
-from setupcheck.ledger.combine import Combined, Draws, Ends, combine
+from setupcheck.ledger.combine import Combined, Drawn, Draws, Ends, combine
 from setupcheck.ledger.figures import Figure
-from setupcheck.quantities.book import Answer, Book, Known, Open
+from setupcheck.quantities.book import Known, Open
 from setupcheck.quantities.relations import Built
 from setupcheck.quantities.requirements import Stack
 from setupcheck.quantities.scopes import CutEntry
@@ -70,30 +67,6 @@ def draws() -> Draws:
     return Draws()
 
 
-def forget_draws(answers: Iterable[Answer]) -> None:
-    """Lets go of the random values behind answers, several MB of a job; the answers stay, and values drawn again are the same."""
-    for answer in list(answers):
-        value = answer.value if isinstance(answer, Known) else None
-        if not isinstance(value, Draws):
-            value = getattr(value, "draws", None)  # of the plan beside what was measured
-        if isinstance(value, Draws):
-            value.forget()
-
-
-DRAWS_KEPT = 2
-"""Reviews whose random values stay in memory, as a change is held against what was before it. Source: our choice."""
-_drawn: deque[ref[Book]] = deque()
-
-
-def let_go_of_older(book: Book) -> None:
-    """The random values of earlier reviews, 10 MB each, go: a list of reviews would fill the memory with what is seldom asked."""
-    _drawn.append(ref(book))
-    while len(_drawn) > DRAWS_KEPT:
-        older = _drawn.popleft()()
-        if older is not None:
-            forget_draws(older.made.values())
-
-
 def requirements(floor: Floor) -> float:
     """Number of requirements. Source: our screening choice (a plan without an aim cannot pass)."""
     return float(len(floor.loaded.job.require))
@@ -131,8 +104,14 @@ def combined(built: Built, stack: Stack, floor: Floor, draws: Draws) -> Result:
 
 def _not_negative(found: Combined) -> Combined:
     """A joint with play holds nothing, and not less than that, though its figure is straight in the interference."""
-    worst, rss, likely = (Ends(max(e.low, 0.0), max(e.high, 0.0)) for e in (found.worst, found.rss, found.likely))
-    return replace(found, worst=worst, rss=rss, likely=likely)
+
+    def cut(ends: Ends) -> Ends:
+        return Ends(max(ends.low, 0.0), max(ends.high, 0.0))
+
+    def drawn() -> Drawn:
+        return replace(found.drawn(), likely=cut(found.likely))
+
+    return replace(found, worst=cut(found.worst), rss=cut(found.rss), drawn=drawn)
 
 
 def worst(result: Result) -> float | None:

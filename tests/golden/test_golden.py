@@ -6,13 +6,20 @@ import pytest
 
 from tests.golden import pages
 
+REPORTS = sorted(path.name for path in pages.HERE.glob("*.txt"))
+DRAWINGS = sorted(path.name for path in pages.HERE.glob("*.svg"))
 
-@pytest.mark.parametrize("name", sorted(pages.reports()))
+
+def test_every_report_and_drawing_has_its_file_and_every_file_its_report() -> None:
+    assert (REPORTS, DRAWINGS) == (sorted(pages.reports()), sorted(pages.drawings()))
+
+
+@pytest.mark.parametrize("name", REPORTS)
 def test_a_report_is_the_same_to_the_letter(name: str) -> None:
     assert (pages.HERE / name).read_text(encoding="utf-8") == pages.reports()[name]
 
 
-@pytest.mark.parametrize("name", sorted(pages.drawings()))
+@pytest.mark.parametrize("name", DRAWINGS)
 def test_a_drawing_is_the_same_to_the_letter(name: str) -> None:
     assert (pages.HERE / name).read_text(encoding="utf-8") == pages.drawings()[name]
 

@@ -28,6 +28,8 @@ DUMPER = getattr(yaml, "CSafeDumper", yaml.SafeDumper)
 few = settings(
     derandomize=True, deadline=None, max_examples=20, database=None, suppress_health_check=[HealthCheck.too_slow]
 )
+fewer = settings(few, max_examples=8)
+"""Where every example is reviewed and printed whole, twice."""
 TEETH = 24
 PITCH = 360.0 / TEETH
 

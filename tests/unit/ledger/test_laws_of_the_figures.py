@@ -21,7 +21,7 @@ from setupcheck.quantities.book import Open
 from setupcheck.quantities.stacks import build
 from setupcheck.report.json import as_data, as_json
 
-from .drawn_jobs import REQUIRE, Node, built, few, in_inches, jobs, loaded, stacks, walked
+from .drawn_jobs import REQUIRE, Node, built, few, fewer, in_inches, jobs, loaded, stacks, walked
 
 SINGLE_PRECISION = 2e-6
 """Draws are made in single precision: rounding of a sum of some dozen of them, relative to the figure."""
@@ -147,7 +147,7 @@ def numbers(tree: object, at: str = "") -> dict[str, float]:
     return {at: float(tree)} if isinstance(tree, int | float) and not isinstance(tree, bool) else {}
 
 
-@few
+@fewer
 @given(jobs())
 def test_an_inch_file_of_the_same_job_gives_the_same_numbers(job: Node) -> None:
     metric, inch = (numbers(as_data(review(loaded(one)))) for one in (job, in_inches(job)))
@@ -180,7 +180,7 @@ def test_every_kind_of_figure_is_asked_of_the_drawn_jobs() -> None:
     } == {str(r["what"]) for r in REQUIRE}
 
 
-@few
+@fewer
 @given(jobs())
 def test_a_job_read_twice_gives_the_same_bytes(job: Node) -> None:
     assert as_json(review(loaded(job))) == as_json(review(loaded(job)))
