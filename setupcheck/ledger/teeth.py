@@ -98,10 +98,12 @@ def division_arcs(
 def _products(basis: Reals, parts: Reals) -> Iterator[tuple[slice, Reals]]:
     """basis @ parts, block by block of the columns of `parts`, each time in the same memory: read it before the next."""
     width, trials = max(1, BLOCK // len(basis)), parts.shape[1]
-    room = np.empty((len(basis), width), dtype=np.float32)
+    room = np.zeros((len(basis), width), dtype=np.float32)
     for start in range(0, trials, width):
         here = slice(start, min(start + width, trials))
-        yield here, np.matmul(basis, parts[:, here], out=room[:, : here.stop - start])
+        with np.errstate(invalid="ignore"):  # a kernel may run over what lies beside its operands, and warn of that
+            product = np.matmul(basis, parts[:, here], out=room[:, : here.stop - start])
+        yield here, product
 
 
 def waves(vectors: Complexes, at: Reals) -> Reals:

@@ -11,6 +11,7 @@ from setupcheck.jobfile.setups import Setup
 from setupcheck.quantities.book import Quantity
 from setupcheck.quantities.dividing import HAS_WHEEL
 from setupcheck.quantities.pairing import FITTED
+from setupcheck.quantities.shop import Floor
 from setupcheck.quantities.worm_sizes import pitch_of_the_wheel
 from setupcheck.record import record
 
@@ -41,6 +42,20 @@ def left_out(loaded: LoadedJob) -> tuple[LeftOut, ...]:
 def stand_in(entry: LeftOut) -> str:
     """What the program goes on with. Source: the job file, and what this package takes where it says nothing."""
     return entry.what
+
+
+def not_made(floor: Floor, part: str) -> str | None:
+    """Surfaces of a part that no operation cuts and that its blank does not bring, or `none`; None for a part nobody machines.
+
+    Source: the part as drawn and the route of the job file.
+    """
+    loaded = floor.loaded
+    refs = [loaded.ref(name, setup.part) for setup in loaded.job.setups for name in setup.cut]
+    cut = {ref.surface for ref in refs if ref.part == part}
+    if not cut:
+        return None
+    surfaces = loaded.job.parts[part].surfaces.items()
+    return ", ".join(name for name, surface in surfaces if name not in cut and surface.made != "stock") or "none"
 
 
 def _all(loaded: LoadedJob) -> Iterator[LeftOut]:
@@ -149,5 +164,14 @@ def _of_setup(loaded: LoadedJob, setup: Setup) -> Iterator[LeftOut]:
 LEFT_OUT = (
     Quantity(
         "entry.stand_in", "entry", "", 0, stand_in, {"entry": ":"}, "what stands in for an entry that is left out"
+    ),
+    Quantity(
+        "entry.not_made",
+        "part",
+        "",
+        0,
+        not_made,
+        {"floor": "route.floor", "part": "@key"},
+        "surfaces of a machined part that nothing makes",
     ),
 )

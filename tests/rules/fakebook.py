@@ -345,6 +345,7 @@ QUANTITIES: Mapping[str, FakeQuantity] = {
         FakeQuantity("measure.planned", "hold", "um", 1),
         FakeQuantity("measure.half_division", "hold", "um", 1),
         FakeQuantity("entry.stand_in", "entry", "", 0),
+        FakeQuantity("entry.not_made", "part", "", 0),
         FakeQuantity("prove.enough", "cut", "", 0),
         FakeQuantity("prove.most", "cut", "um", 1),
         FakeQuantity("prove.allowed", "cut", "um", 1),
