@@ -15,8 +15,9 @@ STRIDES = (0.25, 0.5, 1.0, 2.0, 4.0, 8.0, 16.0, 32.0)
 """How far from its plan a value is tried, in what the plan allows of it. Source: our screening choice."""
 FINEST = {"size": 5e-5, "error": 5e-5, "most": 5e-5, "angle": 5e-6, "heat": 0.2, "time": 0.1}
 """How close an end is found [mm, rad, degC, s]: finer than the box is filled in. Source: our choice."""
-SHORT_OF_IT = 1e-6
-"""How far on the good side of where the margins put an end it is tried, in FINEST: beyond rounding. Source: our choice."""
+SHORT_OF_IT, PAST_IT = 1e-6, 0.9
+"""How far on the good side, and how far beyond it, an end is tried where the margins put it, in FINEST: past rounding, and near
+enough that two trials close it in. Source: our choice."""
 KEEPS_TO_PLAN = "HOLD-007"
 """A reading above its plan is to be trued again. Where a requirement hears of it, the range says how far it may go even so."""
 NO_ROUTE = "no route"
@@ -84,6 +85,7 @@ def allowed(found: Review, entry: Entry) -> Allowed:
     inside = next((value for value in (*_outwards(entry), *towards) if not bad(value)), None)
     if inside is None:
         return replace(free, low=math.nan, high=math.nan, by_low=bad(entry.planned))
+
     def crossing(good: float, worse: float) -> float | None:
         return _crossing(trial, turning, good, worse)
 
@@ -140,9 +142,7 @@ def _outwards(entry: Entry) -> Iterator[float]:
             yield max(entry.planned + way * stride * entry.stride, entry.least)
 
 
-def _end(
-    bad: Bad, crossing: Crossing, inside: float, entry: Entry, way: float
-) -> tuple[float, tuple[str, ...]]:
+def _end(bad: Bad, crossing: Crossing, inside: float, entry: Entry, way: float) -> tuple[float, tuple[str, ...]]:
     """The last value that way of which nothing says worse, and what does so beyond it."""
     good = inside
     if inside == entry.planned and not bad(max(inside + way * STRIDES[-1] * entry.stride, entry.least)):
@@ -173,18 +173,20 @@ def _closed_in(
 ) -> tuple[float, tuple[str, ...]]:
     """The turn between a value that does and one that does not: on either side of where the margins put it, else by halves."""
     good, there = between
-    while (width := abs(there - good)) > finest:
-        step = math.copysign(finest, there - good)
-        guess = crossing(good, there)
-        for value in (*(() if guess is None else (guess - SHORT_OF_IT * step, guess + 0.9 * step)), None):
-            if value is None:
-                if abs(there - good) <= width / 2.0:
-                    break
-                value = (good + there) / 2.0
-            if not min(good, there) < value < max(good, there):
-                continue
+
+    def tried(value: float) -> None:
+        nonlocal good, there, by
+        if min(good, there) < value < max(good, there):
             if said := bad(value):
                 there, by = value, said
             else:
                 good = value
+
+    while (width := abs(there - good)) > finest:
+        step = math.copysign(finest, there - good)
+        if (turn := crossing(good, there)) is not None:
+            tried(turn - SHORT_OF_IT * step)
+            tried(turn + PAST_IT * step)
+        if abs(there - good) > width / 2.0:
+            tried((good + there) / 2.0)
     return good, by

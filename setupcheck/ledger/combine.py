@@ -142,12 +142,15 @@ class Draws:
 
         Their streams are alike too, so nothing but time changes.
         """
+        empty = not self._causes
         known = {push.cause.identity: push.cause for push in theirs.pushes()}
         for push in mine.pushes():
             other = known.get(push.cause.identity)
             drawn = source._causes.get(other) if other is not None and _alike(push.cause, other) else None
             if drawn is not None:
                 self._causes.setdefault(push.cause, drawn)
+        if empty and self._causes:
+            self._let_go_of_older()
         ours, given = getattr(mine, "pattern", None), getattr(theirs, "pattern", None)
         if isinstance(ours, Pattern) and isinstance(given, Pattern) and _divided_alike(ours, given):
             for held, theirs_of in ((self._arcs, source._arcs), (self._radials, source._radials)):
@@ -297,7 +300,7 @@ class Combined:
 
     base   the figure with every cause at its known value
     drawn  what the draws say, made when it is first asked for: they take longer than all the rest
-    Equal where all figures are, those of the draws too.
+    Equal where all figures are, those of the draws too; a copy for another process takes them along.
     """
 
     worst: Ends
@@ -310,7 +313,11 @@ class Combined:
     def __eq__(self, other: object) -> bool:
         return isinstance(other, Combined) and self._figures() == other._figures()
 
-    __hash__ = None  # type: ignore[assignment]
+    def __hash__(self) -> int:
+        return hash((self.worst, self.rss, self.base))
+
+    def __reduce__(self) -> tuple[object, ...]:
+        return _at_hand, self._figures()
 
     def _figures(self) -> tuple[object, ...]:
         return self.worst, self.rss, self.base, self.shares, self.end, self.drawn()
@@ -331,10 +338,30 @@ class Combined:
         return self.drawn().chance_error
 
 
-def combine(figure: Figure, draws: Draws, *, low: float | None, high: float | None, confidence: float) -> Combined:
+def _at_hand(
+    worst: Ends, rss: Ends, base: float, shares: tuple[Share, ...], end: str, drawn: Drawn
+) -> Combined:
+    """A figure whose draws were made in another process."""
+    return Combined(worst, rss, base, shares, end, partial(_itself, drawn))
+
+
+def _itself(drawn: Drawn) -> Drawn:
+    return drawn
+
+
+def combine(
+    figure: Figure,
+    draws: Draws,
+    *,
+    low: float | None,
+    high: float | None,
+    confidence: float,
+    alike: tuple[Draws, Figure] | None = None,
+) -> Combined:
     """Worst case, rss, likely value and chance of a figure.
 
     low, high   limits in the figure's unit, either may be None
+    alike       draws for the same figure with some causes changed: what they hold by then is not drawn again
     confidence  probability of the likely value, 0 .. 1: the value not passed with that probability; with both limits
                 the interval that leaves out equal shares on both sides
     Undetermined causes must have been asked for before (figure.undetermined()).
@@ -355,13 +382,22 @@ def combine(figure: Figure, draws: Draws, *, low: float | None, high: float | No
         (Share(p.cause, _towards(p, towards_high), _towards(p, towards_high) / total) for p in pushes),
         key=lambda s: (-s.worst, s.cause.key),
     )
-    drawn = cache(partial(_drawn, figure, draws, worst, low=low, high=high, confidence=confidence))
+    drawn = cache(partial(_drawn, figure, draws, worst, low=low, high=high, confidence=confidence, alike=alike))
     return Combined(worst, rss, base, tuple(shares), "high" if towards_high else "low", drawn)
 
 
 def _drawn(
-    figure: Figure, draws: Draws, worst: Ends, *, low: float | None, high: float | None, confidence: float
+    figure: Figure,
+    draws: Draws,
+    worst: Ends,
+    *,
+    low: float | None,
+    high: float | None,
+    confidence: float,
+    alike: tuple[Draws, Figure] | None,
 ) -> Drawn:
+    if alike is not None:
+        draws.take_over(alike[0], figure, alike[1])
     values = np.atleast_2d(figure.sample(draws))  # one row, or the least and the largest of a turn
     least, most = values[0], values[-1]
     beyond = 1.0 - confidence

@@ -144,9 +144,7 @@ def then(plan: Plan, stack: Stack, now: Result | None, draws: Draws) -> Result |
         return None
     if isinstance(made, Open) or (now is not None and _outline(made.figure) == _outline(now.figure)):
         return None
-    if now is not None:
-        plan.draws.take_over(draws, made.figure, now.figure)
-    return combine_stack(made, stack, plan.floor, plan.draws)
+    return combine_stack(made, stack, plan.floor, plan.draws, alike=(draws, now.figure) if now is not None else None)
 
 
 def then_margin(then: Result) -> float | None:

@@ -147,7 +147,7 @@ def numbers(tree: object, at: str = "") -> dict[str, float]:
     return {at: float(tree)} if isinstance(tree, int | float) and not isinstance(tree, bool) else {}
 
 
-@fewer
+@few
 @given(jobs())
 def test_an_inch_file_of_the_same_job_gives_the_same_numbers(job: Node) -> None:
     metric, inch = (numbers(as_data(review(loaded(one)))) for one in (job, in_inches(job)))
