@@ -21,7 +21,7 @@ from setupcheck.ledger.route import Pattern, Scatter
 from setupcheck.record import record
 
 if TYPE_CHECKING:
-    from setupcheck.ledger.combine import Draws
+    from setupcheck.ledger.draws import Draws
 
 Reals = NDArray[np.floating]
 

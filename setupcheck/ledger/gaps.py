@@ -25,7 +25,7 @@ from setupcheck.ledger.route import Pattern, Scatter
 from setupcheck.record import record
 
 if TYPE_CHECKING:
-    from setupcheck.ledger.combine import Draws
+    from setupcheck.ledger.draws import Draws
 
 
 def _both_ways(account: Account, factor: float) -> tuple[float, list[Push]]:

@@ -13,7 +13,7 @@ from numpy.typing import NDArray
 
 from setupcheck.ledger.account import Account
 from setupcheck.ledger.causes import Cause
-from setupcheck.ledger.combine import Draws
+from setupcheck.ledger.draws import Draws
 from setupcheck.ledger.figures import Tooth
 from setupcheck.ledger.route import Scatter
 from setupcheck.ledger.teeth import angles, folded

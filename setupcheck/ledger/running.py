@@ -16,7 +16,7 @@ from setupcheck.ledger.figures import Figure, Push, Tooth, merged
 from setupcheck.record import record
 
 if TYPE_CHECKING:
-    from setupcheck.ledger.combine import Draws
+    from setupcheck.ledger.draws import Draws
 
 Reals = NDArray[np.floating]
 

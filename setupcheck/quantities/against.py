@@ -16,7 +16,7 @@ from setupcheck.division.owners import Explained, explained
 from setupcheck.division.results import Reduced, Wave
 from setupcheck.ledger import harmonic
 from setupcheck.ledger.causes import Cause
-from setupcheck.ledger.combine import Draws
+from setupcheck.ledger.draws import Draws
 from setupcheck.ledger.figures import Tooth
 from setupcheck.ledger.route import Pattern
 from setupcheck.ledger.running import AsItRuns

@@ -5,7 +5,8 @@ from __future__ import annotations
 from dataclasses import replace
 
 from setupcheck.jobfile.reading import LoadedJob
-from setupcheck.ledger.combine import Combined, Drawn, Draws, Ends, combine
+from setupcheck.ledger.combine import Combined, Drawn, Ends, combine
+from setupcheck.ledger.draws import Draws
 from setupcheck.ledger.figures import Figure
 from setupcheck.quantities.book import Known, Open
 from setupcheck.quantities.relations import Built

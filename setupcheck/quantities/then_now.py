@@ -14,7 +14,7 @@ from setupcheck.jobfile.setups import Job
 from setupcheck.jobfile.touched import Touched
 from setupcheck.jobfile.worm import Mesh
 from setupcheck.ledger.causes import Cause
-from setupcheck.ledger.combine import Draws
+from setupcheck.ledger.draws import Draws
 from setupcheck.ledger.figures import Figure
 from setupcheck.quantities.book import Open, OutOfRange, Quantity
 from setupcheck.quantities.gates import reaches

@@ -5,7 +5,7 @@ from __future__ import annotations
 from collections.abc import Iterator, Sequence
 
 from setupcheck.flow import Review
-from setupcheck.ledger.combine import TRIALS
+from setupcheck.ledger.draws import TRIALS
 from setupcheck.notation import show
 from setupcheck.quantities.book import Open, Scope
 from setupcheck.quantities.judged import Result

@@ -9,7 +9,8 @@ from typing import Protocol, runtime_checkable
 
 from setupcheck.jobfile.reading import LoadedJob
 from setupcheck.ledger.causes import Cause
-from setupcheck.ledger.combine import Draws, Share, combine
+from setupcheck.ledger.combine import Share, combine
+from setupcheck.ledger.draws import Draws
 from setupcheck.notation import show
 from setupcheck.quantities.book import Answer, Book, Known, Open, Quantity, Scope
 from setupcheck.quantities.judged import Result

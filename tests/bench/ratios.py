@@ -68,7 +68,7 @@ def random_numbers() -> None:
     import numpy as np
 
     from setupcheck.flow import load_job, prepare, stack_results
-    from setupcheck.ledger.combine import TRIALS, Draws
+    from setupcheck.ledger.draws import TRIALS, Draws
 
     loaded = load_job(JOB)
 

@@ -9,7 +9,7 @@ from numpy.typing import NDArray
 
 from setupcheck.ledger.account import Account
 from setupcheck.ledger.causes import Cause
-from setupcheck.ledger.combine import Draws
+from setupcheck.ledger.draws import Draws
 from setupcheck.ledger.route import Pattern, Scatter
 
 from .as_job import Truth

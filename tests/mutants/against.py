@@ -38,6 +38,7 @@ LEDGER = (
     f"{UNIT}/ledger/test_planned_waves_by_hand.py",
     f"{UNIT}/ledger/test_alike.py",
     f"{UNIT}/ledger/test_draws_and_ends.py",
+    f"{UNIT}/ledger/test_drawn_when_asked.py",
     f"{UNIT}/ledger/test_small_pieces_by_hand.py",
     f"{UNIT}/ledger/test_gaps.py",
     f"{UNIT}/ledger/test_kept_devices.py",

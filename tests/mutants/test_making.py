@@ -84,6 +84,6 @@ def test_a_survivor_excuses_its_own_line_and_no_other() -> None:
     assert not told.excused("other", making.mutant(source, 1), source, same)
 
 
-@pytest.mark.parametrize("name", ["setupcheck.ledger.combine", "setupcheck.division.fit"])
+@pytest.mark.parametrize("name", ["setupcheck.ledger.combine", "setupcheck.ledger.draws", "setupcheck.division.fit"])
 def test_the_core_has_many(name: str) -> None:
     assert len(making.mutants(running.file_of(name).read_text(encoding="utf-8"))) > 100

@@ -15,7 +15,7 @@ from numpy.typing import NDArray
 
 from setupcheck.flow import Review, review
 from setupcheck.jobfile.reading import read_job_text
-from setupcheck.ledger.combine import TRIALS, Draws
+from setupcheck.ledger.draws import TRIALS, Draws
 from setupcheck.quantities.judged import Result
 from setupcheck.rulebook import Finding
 

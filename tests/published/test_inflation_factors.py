@@ -15,7 +15,7 @@ import numpy as np
 import pytest
 
 from setupcheck.ledger.causes import Cause
-from setupcheck.ledger.combine import Draws
+from setupcheck.ledger.draws import Draws
 
 from .bench import MANY, spread_error
 from .quadrature import cut_deviation

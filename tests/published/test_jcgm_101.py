@@ -22,7 +22,8 @@ from scipy.integrate import quad
 
 from setupcheck.ledger.account import Account
 from setupcheck.ledger.causes import Cause
-from setupcheck.ledger.combine import TRIALS, Draws, combine
+from setupcheck.ledger.combine import combine
+from setupcheck.ledger.draws import TRIALS, Draws
 from setupcheck.ledger.figures import Vector
 
 from .bench import MANY, UM, end_error, sampled, share_error, spread_error, stack

@@ -19,7 +19,7 @@ from scipy.integrate import quad
 
 from setupcheck.ledger.account import Account
 from setupcheck.ledger.causes import Cause
-from setupcheck.ledger.combine import Draws
+from setupcheck.ledger.draws import Draws
 
 from .bench import MANY, SIGMAS, end_error
 

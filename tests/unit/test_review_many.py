@@ -15,7 +15,8 @@ import pytest
 
 from setupcheck import Reviewed, example, review, review_many
 from setupcheck.flow import Review
-from setupcheck.ledger.combine import DRAWS_KEPT, Ends, combine
+from setupcheck.ledger.combine import Ends, combine
+from setupcheck.ledger.draws import DRAWS_KEPT
 from setupcheck.many import one_line
 from setupcheck.quantities.book import Known
 from setupcheck.report.json import as_json

@@ -143,7 +143,7 @@ def _drawn(found: Review, ring: Tooth) -> tuple[tuple[float, ...], tuple[float, 
     import numpy as np
 
     from setupcheck.ledger import teeth
-    from setupcheck.ledger.combine import Draws
+    from setupcheck.ledger.draws import Draws
 
     answer = found.book.get("route.draws", found.book.instances("job")[0])
     draws = answer.value if isinstance(answer, Known) and isinstance(answer.value, Draws) else Draws()

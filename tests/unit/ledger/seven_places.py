@@ -9,7 +9,7 @@ import numpy as np
 
 from setupcheck.ledger.account import Account
 from setupcheck.ledger.causes import Cause
-from setupcheck.ledger.combine import Draws
+from setupcheck.ledger.draws import Draws
 from setupcheck.ledger.figures import (
     Figure,
 )

@@ -7,7 +7,7 @@ import pytest
 
 from setupcheck.ledger.account import Account
 from setupcheck.ledger.causes import Cause
-from setupcheck.ledger.combine import Draws, _alike, _divided_alike
+from setupcheck.ledger.draws import Draws, _alike, _divided_alike
 from setupcheck.ledger.figures import Tooth
 from setupcheck.ledger.route import (
     Pattern,

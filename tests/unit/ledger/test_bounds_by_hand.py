@@ -11,7 +11,8 @@ import pytest
 
 from setupcheck.ledger.account import Account, face_reading_to_lean, real
 from setupcheck.ledger.causes import TRUNCATION, TRUNCATION_2D, Cause, stream_key
-from setupcheck.ledger.combine import Draws, combine
+from setupcheck.ledger.combine import combine
+from setupcheck.ledger.draws import Draws
 from setupcheck.ledger.figures import (
     Length,
     Push,

@@ -13,7 +13,7 @@ import pytest
 
 from setupcheck.ledger.account import Account, real
 from setupcheck.ledger.causes import Cause
-from setupcheck.ledger.combine import Draws
+from setupcheck.ledger.draws import Draws
 from setupcheck.ledger.figures import (
     FaceStock,
     MidPlane,

@@ -17,7 +17,8 @@ from scipy import stats
 
 from setupcheck.ledger.account import Account
 from setupcheck.ledger.causes import TRUNCATION, Cause
-from setupcheck.ledger.combine import Combined, Draws, combine
+from setupcheck.ledger.combine import Combined, combine
+from setupcheck.ledger.draws import Draws
 from setupcheck.ledger.figures import Figure, Length, Vector
 
 COUNTS = (500, 2_000, 8_000, 32_000)

@@ -9,7 +9,8 @@ import pytest
 
 from setupcheck.ledger.account import Account
 from setupcheck.ledger.causes import Cause
-from setupcheck.ledger.combine import Draws, combine
+from setupcheck.ledger.combine import combine
+from setupcheck.ledger.draws import Draws
 from setupcheck.ledger.figures import Stock, Tooth, Vector
 from setupcheck.ledger.route import Pattern
 from setupcheck.ledger.running import AsItRuns

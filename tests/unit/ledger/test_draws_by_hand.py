@@ -10,7 +10,8 @@ import pytest
 
 from setupcheck.ledger.account import Account, face_reading_to_lean, fim_to_eccentricity
 from setupcheck.ledger.causes import TRUNCATION, TRUNCATION_2D, Cause
-from setupcheck.ledger.combine import Draws, Ends, _chance, _nearer_end, _quantile, combine
+from setupcheck.ledger.combine import Ends, _chance, _nearer_end, _quantile, combine
+from setupcheck.ledger.draws import Draws
 from setupcheck.ledger.figures import (
     OverATurn,
     Stock,

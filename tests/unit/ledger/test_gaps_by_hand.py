@@ -10,7 +10,7 @@ import pytest
 
 from setupcheck.ledger.account import Account, real
 from setupcheck.ledger.causes import Cause
-from setupcheck.ledger.combine import Draws
+from setupcheck.ledger.draws import Draws
 from setupcheck.ledger.figures import alternatives
 from setupcheck.ledger.gaps import GapSymmetry, RunOff
 from setupcheck.ledger.route import (

@@ -11,7 +11,7 @@ import pytest
 from setupcheck.ledger import teeth
 from setupcheck.ledger.account import Account, real
 from setupcheck.ledger.causes import Cause
-from setupcheck.ledger.combine import Draws
+from setupcheck.ledger.draws import Draws
 from setupcheck.ledger.holes import HoleChord, HolePosition, PitchCircle
 from setupcheck.ledger.route import Pattern, Periodic, Scatter, Shaped
 

@@ -12,7 +12,8 @@ from hypothesis import strategies as st
 
 from setupcheck.ledger.account import Account
 from setupcheck.ledger.causes import Cause
-from setupcheck.ledger.combine import Draws, combine
+from setupcheck.ledger.combine import combine
+from setupcheck.ledger.draws import Draws
 from setupcheck.ledger.figures import OverATurn, alternatives
 from setupcheck.ledger.route import Pattern, Scatter
 from setupcheck.quantities.gates import origins, reaches, room, span, with_cause, worst_excess

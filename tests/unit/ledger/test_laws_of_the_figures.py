@@ -16,7 +16,8 @@ from hypothesis import strategies as st
 from setupcheck.flow import review
 from setupcheck.ledger.account import Account
 from setupcheck.ledger.causes import TRUNCATION, TRUNCATION_2D, Cause
-from setupcheck.ledger.combine import Draws, combine
+from setupcheck.ledger.combine import combine
+from setupcheck.ledger.draws import Draws
 from setupcheck.quantities.book import Open
 from setupcheck.quantities.stacks import build
 from setupcheck.report.json import as_data, as_json

@@ -12,7 +12,8 @@ from hypothesis import strategies as st
 from setupcheck.jobfile.names import Ref
 from setupcheck.ledger.account import Account
 from setupcheck.ledger.causes import Cause
-from setupcheck.ledger.combine import Draws, combine
+from setupcheck.ledger.combine import combine
+from setupcheck.ledger.draws import Draws
 from setupcheck.ledger.route import State
 from setupcheck.quantities.book import Open
 from setupcheck.quantities.shop import Floor

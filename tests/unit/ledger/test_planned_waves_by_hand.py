@@ -11,7 +11,7 @@ import pytest
 from setupcheck.ledger import teeth
 from setupcheck.ledger.account import Account
 from setupcheck.ledger.causes import Cause
-from setupcheck.ledger.combine import Draws
+from setupcheck.ledger.draws import Draws
 from setupcheck.ledger.figures import Tooth, Vector
 from setupcheck.ledger.harmonic import planned_wave, towards
 from setupcheck.ledger.heads import share_left

@@ -11,7 +11,8 @@ import pytest
 from setupcheck.ledger import teeth
 from setupcheck.ledger.account import Account, real
 from setupcheck.ledger.causes import Cause
-from setupcheck.ledger.combine import Draws, combine
+from setupcheck.ledger.combine import combine
+from setupcheck.ledger.draws import Draws
 from setupcheck.ledger.figures import Stock, Tooth, ToothRunOut
 from setupcheck.ledger.holes import HolePosition
 from setupcheck.ledger.route import Pattern, Periodic, Scatter, Seat, Shaped, State, clocked, joined, untouched

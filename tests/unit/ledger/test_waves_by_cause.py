@@ -9,7 +9,7 @@ import pytest
 
 from setupcheck.ledger.account import Account
 from setupcheck.ledger.causes import Cause
-from setupcheck.ledger.combine import Draws
+from setupcheck.ledger.draws import Draws
 from setupcheck.ledger.figures import Tooth
 from setupcheck.ledger.harmonic import planned_wave, towards
 from setupcheck.ledger.route import Pattern, Periodic, Scatter, Shaped
