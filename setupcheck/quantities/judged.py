@@ -93,13 +93,18 @@ def built(floor: Floor, stack: Stack) -> Known | Open:
     return _known(build(floor, stack), floor.loaded)
 
 
-def combined(
-    built: Built, stack: Stack, floor: Floor, draws: Draws, alike: tuple[Draws, Figure] | None = None
-) -> Result:
+def combined(built: Built, stack: Stack, floor: Floor, draws: Draws) -> Result:
     """Worst case |sum of known vectors| + sum |coefficient| bound; rss; likely value and chance by Monte Carlo.
 
     Source: worst case and rss common practice; Monte Carlo JCGM 101:2008.
     """
+    return combined_beside(built, stack, floor, draws, None)
+
+
+def combined_beside(
+    built: Built, stack: Stack, floor: Floor, draws: Draws, alike: tuple[Draws, Figure] | None
+) -> Result:
+    """The same beside a figure that is alike but for some causes: what was drawn for that one is not drawn again."""
     job = floor.loaded.job
     found = combine(built.figure, draws, low=stack.low, high=stack.high, confidence=job.confidence, alike=alike)
     return Result(stack, _not_negative(found) if stack.require.what == "torque" else found, built.figure)

@@ -18,8 +18,7 @@ from setupcheck.ledger.draws import Draws
 from setupcheck.ledger.figures import Figure
 from setupcheck.quantities.book import Open, OutOfRange, Quantity
 from setupcheck.quantities.gates import reaches
-from setupcheck.quantities.judged import Result
-from setupcheck.quantities.judged import combined as combine_stack
+from setupcheck.quantities.judged import Result, combined_beside
 from setupcheck.quantities.readings import readings
 from setupcheck.quantities.requirements import Stack
 from setupcheck.quantities.route import walk
@@ -144,7 +143,8 @@ def then(plan: Plan, stack: Stack, now: Result | None, draws: Draws) -> Result |
         return None
     if isinstance(made, Open) or (now is not None and _outline(made.figure) == _outline(now.figure)):
         return None
-    return combine_stack(made, stack, plan.floor, plan.draws, alike=(draws, now.figure) if now is not None else None)
+    alike = (draws, now.figure) if now is not None else None
+    return combined_beside(made, stack, plan.floor, plan.draws, alike)
 
 
 def then_margin(then: Result) -> float | None:
