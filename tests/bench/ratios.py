@@ -97,7 +97,7 @@ def random_numbers() -> None:
 
         draws = Draws()
         for figure in figures:
-            combine(figure, draws, low=None, high=1.0, confidence=0.95)
+            combine(figure, draws, low=None, high=1.0, confidence=0.95).drawn()
 
     ratio("Monte Carlo of all stacks / drawing its random numbers", timed(carlo), timed(draw), "under 2")
 
