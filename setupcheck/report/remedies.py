@@ -40,8 +40,9 @@ READ_CLOSER = "Read it closer or at more places: the swing itself, {read.swing},
 
 
 def remedy_in_words(found: Review, finding: Finding) -> str:
-    """What to do about a finding; of an open one, what to fill."""
-    if finding.verdict in ("open", "pass"):
+    """What to do about a finding; nothing of an open one that waits for a value or cannot be told, for its key is printed."""
+    judged = finding.limit is not None and not finding.missing
+    if finding.verdict == "pass" or (finding.verdict == "open" and not judged):
         return ""
     if finding.rule in STACK_RULES and finding.key in found.remedies:
         told = _worked_out(found.remedies[finding.key], inches=found.book.inches)

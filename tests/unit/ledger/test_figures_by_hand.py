@@ -102,6 +102,7 @@ def test_the_worse_of_two_ends_is_the_one_that_reaches_farther() -> None:
     values = [np.abs(draws.account(end)) for end in (near_end, far_end)]
     assert figure.sample(draws) == pytest.approx(2.0 * np.maximum(*values))
     assert Vector((open_one("x"), open_one("y") + open_one("x")), 1.0).undetermined() == ("path.x", "path.y")
+    assert Length(open_one("x") + open_one("y")).undetermined() == ("path.x", "path.y")
 
 
 def test_only_figures_with_two_ends_are_signed() -> None:

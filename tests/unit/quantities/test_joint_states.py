@@ -10,8 +10,10 @@ import pytest
 from setupcheck.errors import JobError
 from setupcheck.flow import review
 from setupcheck.jobfile.reading import read_job_text
+from setupcheck.jobfile.setups import Join
 from setupcheck.physics import interference as fits
-from setupcheck.quantities.pairing import Pair
+from setupcheck.quantities.book import Open
+from setupcheck.quantities.pairing import Pair, service
 from setupcheck.report.heating_plan import heating_plans
 from setupcheck.report.joint import joints
 from setupcheck.report.text import as_text
@@ -24,6 +26,14 @@ SERVICE = "[10 degC, 25 degC]"
 
 def apart(cold: str, warm: str) -> str:
     return changed((SERVICE, f"[{cold}, {warm}]"))
+
+
+def test_a_service_is_asked_of_what_interference_holds_and_taken_of_any_joint() -> None:
+    warmth = ((10.0, 10.0), (25.0, 25.0))
+    for by in ("shrink", "press"):
+        assert service(Join.model_construct(by=by, serves_at=None), 50) == Open(("setups.50.join.serves_at",))
+    assert service(Join.model_construct(by="screw", serves_at=None), 50) is None
+    assert service(Join.model_construct(by="screw", serves_at=warmth), 50) == warmth
 
 
 def test_hub_and_shaft_apart_with_one_temperature_are_the_joint_as_a_whole() -> None:
