@@ -96,6 +96,8 @@ def test_what_pushes_single_gaps_by_hand() -> None:
     ring = Pattern(5, 20.0, scatter=(some, Scatter(Cause("turn", "length", high=1.0), "angle", 1.0)))
     figure = GapSymmetry((Account.of(Cause("e", "disc", high=0.01)),), 8.0, aside, askew, ring)
     assert figure.base() == pytest.approx(2.0 * 0.001 + 2.0 * 8.0 * 2e-4)
+    off_centre = GapSymmetry((real(0.002),), 8.0, real(0.001), Account(), Pattern(5, 20.0))
+    assert off_centre.base() == pytest.approx(2.0 * (0.002 + 0.001))  # a number nobody named counts in full
     assert {p.cause.key: (p.down, p.up) for p in figure.pushes()} == {
         "e": pytest.approx((0.0, 0.02)), "aside": pytest.approx((0.0, 0.006)), "askew": pytest.approx((0.0, 16.0 * 1e-4)),
         "xy": pytest.approx((0.0, 2.0 * 0.004 * 0.75)),
