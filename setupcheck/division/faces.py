@@ -28,20 +28,6 @@ def wrapped(angle: Reals) -> Reals:
     return np.asarray(np.remainder(np.asarray(angle) + math.pi, math.tau) - math.pi)
 
 
-def both_faces(left: Reals, right: Reals) -> tuple[Reals, Reals]:
-    """(direction, collimation) of each pair of readings [rad], 0 .. 2 pi: (L + R -+ pi)/2 and (R - L -+ pi)/2.
-
-    What has opposite signs in both faces cancels in the mean: collimation and a trunnion axis out of square. A vertical
-    axis out of plumb does not.  Source: trade practice (from memory).
-
-    >>> d, c = both_faces(np.radians([45.175]), np.radians([225 + 10/60 + 44/3600]))
-    >>> [round(x * 648000 / math.pi) for x in (d[0] - math.radians(45), c[0])]      # 10'37" and 7"
-    [637, 7]
-    """
-    half = wrapped(right - left - math.pi) / 2.0
-    return np.remainder(left + half, math.tau), half
-
-
 def spread_of_sets(sets: Reals) -> tuple[float, int]:
     """(standard deviation of a direction read once in both faces, degrees of freedom) of sets of the same targets.
 

@@ -97,9 +97,7 @@ class Combined:
         return self.drawn().chance_error
 
 
-def _at_hand(
-    worst: Ends, rss: Ends, base: float, shares: tuple[Share, ...], end: str, drawn: Drawn
-) -> Combined:
+def _at_hand(worst: Ends, rss: Ends, base: float, shares: tuple[Share, ...], end: str, drawn: Drawn) -> Combined:
     """A figure whose draws were made in another process."""
     return Combined(worst, rss, base, shares, end, partial(_itself, drawn))
 

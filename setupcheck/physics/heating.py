@@ -31,7 +31,7 @@ LUMPED_BELOW = 0.1
 """Biot number below which a body has one temperature throughout, to some 5 %. Source: textbooks of heat transfer."""
 LARGEST_HEATED, LARGEST_CHILLED = 5000.0, 1500.0
 """Largest outside of a part in warm or in cold still air [mm]: the film is known up to a Rayleigh number of 1e12, which is
-reached at 5.1 m up to 400 degC and at 1.58 m down to -205 degC. Computed here (`rayleigh_number`)."""
+reached at 5.1 m up to 400 degC and at 1.58 m down to -205 degC. A test computes it."""
 _PARTS = 400  # of the integral over the temperature, which is steep near the air; our choice
 _STEPS = 100  # of the time integration; our choice, the tests compare with scipy and published times
 
@@ -108,7 +108,7 @@ def holding_temperature(
     """Temperature of the whole joint up to which it keeps the interference it needs [degC].
 
     T = 20 + (U - U_needed) / (D (alpha_A - alpha_I))
-    interference  smallest, after smoothing; needed: from `pressure_to_hold` and `interference_for`, slip factor inside
+    interference  smallest, after smoothing; needed: for what it must carry, slip factor inside
     A hub that does not outgrow its shaft keeps it at any heat (inf), or has not enough of it at any (-inf).
     At or below 20: the joint does not hold at 20 degC. Take the hub's high end and the shaft's low end of expansion.
     Source: derived here.
@@ -182,15 +182,6 @@ def lowest_hub_temperature(planned: float, *, oven_error: float, carry_loss: flo
     return planned - oven_error - carry_loss
 
 
-def highest_hub_temperature(planned: float, *, oven_error: float) -> float:
-    """What the hub may reach [degC]: planned + oven error. Compare with the cap of its material.
-
-    >>> highest_hub_temperature(150, oven_error=10)
-    160
-    """
-    return planned + oven_error
-
-
 def planned_heat(*, needed: float, cap: float, oven_error: float, carry_loss: float) -> Temperatures:
     """Settings of the oven that meet the need and keep the cap [degC]; low above high: heat alone does not do it.
 
@@ -249,15 +240,6 @@ def film_coefficient(*, surface: float, air: float, diameter: float) -> float:
     conductivity, prandtl, rayleigh = _air(surface, air, diameter)
     nusselt = (0.60 + 0.387 * rayleigh ** (1 / 6) / (1.0 + (0.559 / prandtl) ** (9 / 16)) ** (8 / 27)) ** 2
     return float(nusselt * conductivity / (diameter / 1000.0))
-
-
-def rayleigh_number(*, surface: float, air: float, diameter: float) -> float:
-    """How hard warm air rises along a cylinder [1], as `film_coefficient` has it; degC, mm. Source: as there.
-
-    >>> f"{rayleigh_number(surface=165, air=23, diameter=100):.1e}"
-    '5.5e+06'
-    """
-    return _air(surface, air, diameter)[2]
 
 
 def _air(surface: float, air: float, diameter: float) -> tuple[float, float, float]:

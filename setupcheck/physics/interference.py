@@ -255,33 +255,6 @@ def axial_capacity(pressure: float, *, friction: float, diameter: float, length:
     return friction * pressure * math.pi * diameter * length / slip_factor
 
 
-def torque_capacity(pressure: float, *, friction: float, diameter: float, length: float, slip_factor: float) -> float:
-    """Torque that the joint carries [N mm]: T = mu p pi D^2 L / (2 S).  Raises, source: as `axial_capacity`.
-
-    >>> round(torque_capacity(2.021, friction=0.17, diameter=100, length=30, slip_factor=1) / 1000, 1)
-    161.9
-    """
-    force = axial_capacity(pressure, friction=friction, diameter=diameter, length=length, slip_factor=slip_factor)
-    return force * diameter / 2.0
-
-
-def pressure_to_hold(
-    *, torque: float, axial_force: float, friction: float, diameter: float, length: float, slip_factor: float
-) -> float:
-    """Least pressure at which torque and axial force together are held [MPa].
-
-    p = S sqrt(F^2 + (2 T / D)^2) / (mu pi D L)
-    Raises: ValueError where nothing can hold (friction or length not above 0) or S < 1.
-    Source: the two friction forces at right angles, derived here.
-
-    >>> round(pressure_to_hold(torque=161.9e3, axial_force=0, friction=0.17, diameter=100, length=30, slip_factor=1), 2)
-    2.02
-    """
-    if friction <= 0.0 or length <= 0.0 or slip_factor < 1.0:
-        raise ValueError("friction and length must be above 0, and the slip factor at least 1")
-    return slip_factor * math.hypot(axial_force, 2.0 * torque / diameter) / (friction * math.pi * diameter * length)
-
-
 def press_force(pressure: float, *, friction: float, diameter: float, length: float) -> float:
     """Force at the end of pressing in [N]: F = mu_in p pi D L, with p from the largest interference.
 

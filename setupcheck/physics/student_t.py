@@ -81,21 +81,6 @@ def f_above(x: float, nu1: float, nu2: float) -> float:
     return 1.0 if x <= 0.0 else _beta_share(nu2 / 2.0, nu1 / 2.0, nu2 / (nu2 + nu1 * x))
 
 
-def f_quantile(p: float, nu1: float, nu2: float) -> float:
-    """The value that Fisher's F stays below with probability p.
-
-    nu1, nu2  degrees of freedom above and below the line, 1 .. LARGEST_NU
-    Raises: OutOfRange.
-    Source: as `f_above`.
-
-    >>> round(f_quantile(0.975, 32, 32), 2)
-    2.02
-    """
-    _check(p, nu1)
-    _check(p, nu2)
-    return _root(lambda x: 1.0 - f_above(x, nu1, nu2), p)
-
-
 def _check(p: float, nu: float) -> None:
     if not 0.0 < p < 1.0:  # NaN as well
         raise OutOfRange(f"a probability lies between 0 and 1, not {p:g}. Write 0.95")

@@ -35,8 +35,6 @@ from setupcheck.quantities.stuff import material_named, material_of
 from setupcheck.quantities.thread import Thread, thread
 from setupcheck.record import record
 
-ALONG = ("circular", "normal")
-"""Ways a backlash is stated beside `at` a radius."""
 REFERENCE = 20.0  # degC of all sizes, ISO 1
 
 

@@ -100,6 +100,9 @@ def with_own(
     """The job with what a record says of its devices, and with house values where the record says nothing.
 
     A device's own record stands before the house's value of its kind. What is measured or stated in the job stays as it is.
+    A device is looked up by its own name (`four-jaw-A`); the axis by the name of the machine; tilt and division by it as well
+    where they go by the machine's own scale, wheel or worm, else by the way (`sine-bar`, `polygon`); heat and cold by what
+    makes or reads them.  A thin record, or one all alike, gives nothing and the typical value stays.
     """
     filling = _Filling(loaded, found, values)
     job = filling.job()
@@ -118,19 +121,6 @@ def in_force(found: DeviceRecord | None, values: HouseRows, device: str, what: s
         return series.limit, True
     own, usual = values.of(device, what), typical(device, what)
     return (own.value, True) if own is not None else (usual.value, False) if usual is not None else None
-
-
-def with_record(loaded: LoadedJob, found: DeviceRecord) -> tuple[LoadedJob, RecordUse]:
-    """The job with the record's limits put where it names a device, or a machine, and states no value of its own.
-
-    A device is looked up by its own name (`four-jaw-A`); the axis by the name of the machine; tilt and division by it as well
-    where they go by the machine's own scale, wheel or worm, else by the way (`sine-bar`, `polygon`); heat and cold by what
-    makes or reads them.  A thin record, or one all alike, gives nothing and the typical value stays.  What is measured or
-    stated in the job stays as it is.
-    """
-    filled, used, _ = with_own(loaded, found, HouseRows("", ()))
-    assert used is not None
-    return filled, used
 
 
 class _Filling:

@@ -32,7 +32,6 @@ ON_YIELD = 1.0
 """Safety on yield of ductile parts. Source: DIN 7190, 1.0 to 1.3 (from memory); yields are least values already."""
 ON_BREAKING = 3.0
 """Safety of a brittle hub on its tensile strength. Source: 2 to 3 (from memory); the stricter, as the caution has it."""
-REFERENCE = 20.0  # degC of all sizes, ISO 1
 
 
 def grip_least(pair: Pair, least: float, smoothing: float, service: tuple[Warmth, Warmth]) -> float:

@@ -23,8 +23,6 @@ from setupcheck.record import record
 
 MOST_WALKS = 300
 """Changed routes that are walked in one run. Source: our screening choice, some seconds on a small computer."""
-TOUCHING = 1e-9
-"""Share of its limit by which a stack may seem outside from the noise of sums alone. Source: our choice."""
 GOOD_DATUM = ("made", "stock")
 Gives = Callable[[str, str], tuple[float, bool] | None]
 """From a device and what is asked of it (`four-jaw`, `runout`) to the value in force [mm, rad or K], and whether that is the

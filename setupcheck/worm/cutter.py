@@ -2,7 +2,7 @@
 
 A fly cutter makes a surface of revolution and cannot make the flank's twist. Along the face (z, from the mid-plane) and
 across it (eta, on the worm's radius from the pitch point, positive towards the wheel's root) the metal missing is
-    e = A z^2 - B z eta        A crowning [1/mm], B twist [1/mm], C_0 z left out: see tilt.square_tilt
+    e = A z^2 - B z eta        A crowning [1/mm], B twist [1/mm], C_0 z left out: a tilt a little above g ends it
 for the right flank of a right-hand pair; z changes sign for the other flank or hand. r1 the worm's radius at the pitch
 point (d1/2 without profile shift) and g the lead angle there, r2 = d2/2 of the wheel, D how much the cutter is larger
 than worm tip + clearance, th0 half the gap angle of the wheel at r2.
@@ -166,32 +166,6 @@ def ridge_slope(*, crowning: float, twist: float) -> float:
     return twist / (2.0 * crowning)
 
 
-def crowning_for_ridge(*, twist: float, axial_module: float, face_width: float) -> float:
-    """Crowning below which the ridge runs off the ends of the face [1/mm]: 1.3 B m/b.
-
-    z* = B m/(2 A) must stay inside b/2 one module from pitch height; 1.3 for the fourth order at wide faces.
-    Necessary, not enough: for marking free of both ends the simulation asks for two to three times as much.
-    Raises: ValueError for sizes not above zero.  Source: derived; the factor 1.3 fitted to own simulation.
-
-    >>> round(1e3 * crowning_for_ridge(twist=8.66e-3, axial_module=2.5, face_width=16.0), 2)
-    1.76
-    """
-    above_zero(axial_module=axial_module, face_width=face_width)
-    not_below_zero(twist=twist)
-    return RIDGE_ALLOWANCE * twist * axial_module / face_width
-
-
-def ridge_runs_off(*, crowning: float, twist: float, axial_module: float, face_width: float) -> bool:
-    """Whether the ridge of contact leaves the face within one module of pitch height: A < 1.3 B m/b.
-
-    Raises: ValueError for sizes not above zero.  Source: `crowning_for_ridge`.
-
-    >>> ridge_runs_off(crowning=1.27e-3, twist=8.9e-3, axial_module=2.5, face_width=16.0)
-    True
-    """
-    return crowning < crowning_for_ridge(twist=twist, axial_module=axial_module, face_width=face_width)
-
-
 def contact_share(
     film: float, *, crowning: float, pressure_angle: float, lead_angle: float, face_width: float
 ) -> float:
@@ -226,30 +200,3 @@ def profile_error_of_tilt(error: float, *, crowning: float, twist: float) -> flo
     1.43
     """
     return abs(error) * ridge_slope(crowning=crowning, twist=twist)
-
-
-def profile_error_of_offset(
-    offset: float,
-    cut: Plunge,
-    *,
-    crowning: float,
-    twist: float,
-) -> float:
-    """Error of the pressure angle on the contact ridge for a cutter off the wheel's mid-plane [rad].
-
-    |d| [C_c B/(2 A) + tan g (1/r2 + tan^2 alpha/(r1 + D))],  C_c = tan(alpha + th0)/((r1 + D) cos^2 g)
-    offset  d, cutter's plane from the mid-plane [mm]
-    Raises: ValueError for edge contact.
-    Source: derived from e; the simulated transmission error is up to twice this over two modules of height.
-
-    >>> round(1e3 * 5.0 * profile_error_of_offset(0.05, Plunge(pitch_diameter=30.0, wheel_diameter=100.0,
-    ...       pressure_angle=math.radians(20.0), lead_angle=math.atan(1.0 / 12.0), gap_arc=math.pi * 1.25, oversize=11.75),
-    ...       crowning=4.41e-3, twist=8.68e-3), 1)
-    4.3
-    """
-    slope = ridge_slope(crowning=crowning, twist=twist)
-    rise = math.tan(cut.lead_angle)
-    bend = cut.wall * (1.0 + rise * rise) / cut.at_pitch
-    return abs(offset) * (
-        bend * slope + rise * (2.0 / cut.wheel_diameter + math.tan(cut.pressure_angle) ** 2 / cut.at_pitch)
-    )

@@ -8,25 +8,6 @@ from collections.abc import Sequence
 from setupcheck.worm.geometry import above_zero
 
 
-def depth_to_feed(*, touched_diameter: float, root_diameter: float) -> float:
-    """Depth from the surface that the tip touched in the mid-plane [mm]: (touched - root diameter)/2.
-
-    touched_diameter  as measured: the throat at its bottom, or the plain outside
-    root_diameter     of the gap, 2 (a - ra1 - c)
-    Validity: the tip touches in the mid-plane, pointing at the wheel's axis; a cutter turning at a throat touches the
-    corners first (`early_touch`).
-    Raises: ValueError for sizes not above zero or nothing left to cut.  Source: geometry.
-
-    >>> depth_to_feed(touched_diameter=124.0, root_diameter=115.0), depth_to_feed(touched_diameter=127.0, root_diameter=115.0)
-    (4.5, 6.0)
-    """
-    above_zero(touched_diameter=touched_diameter, root_diameter=root_diameter)
-    depth = (touched_diameter - root_diameter) / 2.0
-    if not depth > 0.0:
-        raise ValueError(f"the touched diameter {touched_diameter:g} mm is not above the root {root_diameter:g} mm")
-    return depth
-
-
 def early_touch(*, throat_radius: float, cutter_radius: float, throat_width: float) -> float:
     """How much earlier a turning cutter touches the corners of a throat than its bottom [mm]; 0 where it fits in.
 
@@ -67,15 +48,3 @@ def left_by_passes(depth: float, passes: Sequence[float]) -> float:
         above_zero(**{f"pass_{number}": cut})
     left = depth - math.fsum(passes)
     return 0.0 if abs(left) < 1e-9 else left
-
-
-def passes_add_up(depth: float, passes: Sequence[float], *, readout_step: float) -> bool:
-    """Whether the passes reach the depth to within half a step of the dial or readout.
-
-    Raises: ValueError for a depth, pass or step not above zero.  Source: arithmetic.
-
-    >>> passes_add_up(4.5, [2.0, 2.0, 0.3], readout_step=0.01)
-    False
-    """
-    above_zero(readout_step=readout_step)
-    return abs(left_by_passes(depth, passes)) <= readout_step / 2.0 + 1e-9

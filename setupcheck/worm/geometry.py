@@ -52,7 +52,7 @@ def lead(*, starts: int, axial_module: float) -> float:
 def lead_angle(*, starts: int, axial_module: float, diameter: float) -> float:
     """Lead angle of the thread at a diameter [rad]: tan g = z1 m/d. Flatter at the tip, steeper at the root.
 
-    diameter  for the tilt: the pitch point, d1 without profile shift (see `pitch_point_diameter`), never the tip
+    diameter  for the tilt: the pitch point, d1 + 2 x m with the wheel's profile shift x, never the tip
     Raises: ValueError for sizes not above zero, or a thread at 45 deg or steeper.
     Source: ISO 1122-2 quantities (from memory); Mott, Machine Elements, ch. 8 (example checked).
 
@@ -63,33 +63,6 @@ def lead_angle(*, starts: int, axial_module: float, diameter: float) -> float:
     angle = math.atan(starts * axial_module / diameter)
     steep_enough(lead_angle=angle)
     return angle
-
-
-def pitch_point_diameter(*, reference_diameter: float, axial_module: float, shift: float) -> float:
-    """Worm diameter that rolls on the wheel's reference circle [mm]: d1 + 2 x m = 2 a - d2; d1 without shift.
-
-    Raises: ValueError for sizes not above zero.  Source: derived; the wheel's rolling circle is always d2 = z2 m.
-
-    >>> pitch_point_diameter(reference_diameter=28.0, axial_module=2.0, shift=0.25)
-    29.0
-    """
-    above_zero(reference_diameter=reference_diameter, axial_module=axial_module)
-    diameter = reference_diameter + 2.0 * shift * axial_module
-    above_zero(pitch_point_diameter=diameter)
-    return diameter
-
-
-def diameter_at_lead_angle(angle: float, *, starts: int, axial_module: float) -> float:
-    """Diameter at which a thread has this lead angle [mm]: d = z1 m/tan g.
-
-    Raises: ValueError for an angle outside 0 .. 45 deg.  Source: `lead_angle` turned round.
-
-    >>> round(diameter_at_lead_angle(math.radians(3.5763), starts=1, axial_module=2.0), 2)
-    32.0
-    """
-    above_zero(starts=starts, axial_module=axial_module)
-    steep_enough(lead_angle=angle)
-    return starts * axial_module / math.tan(angle)
 
 
 def whose_lead_angle(
@@ -128,18 +101,6 @@ def normal_pressure_angle(axial: float, lead_angle: float) -> float:
     return math.atan(math.tan(axial) * math.cos(lead_angle))
 
 
-def axial_pressure_angle(normal: float, lead_angle: float) -> float:
-    """Pressure angle in the axial section [rad]: tan alpha = tan alpha_n/cos g.
-
-    Raises: ValueError for angles outside 0 .. 45 deg.  Source: `normal_pressure_angle` turned round.
-
-    >>> round(math.degrees(axial_pressure_angle(math.radians(19.9364), math.atan(1.0 / 12.0))), 3)
-    20.0
-    """
-    steep_enough(normal_pressure_angle=normal, lead_angle=lead_angle)
-    return math.atan(math.tan(normal) / math.cos(lead_angle))
-
-
 def centre_distance(*, axial_module: float, reference_diameter: float, wheel_teeth: int, shift: float = 0.0) -> float:
     """Centre distance that closes the pair [mm]: a = m (q + z2)/2 + x m with q = d1/m.
 
@@ -150,27 +111,6 @@ def centre_distance(*, axial_module: float, reference_diameter: float, wheel_tee
     """
     above_zero(axial_module=axial_module, reference_diameter=reference_diameter, wheel_teeth=wheel_teeth)
     return (reference_diameter + axial_module * wheel_teeth) / 2.0 + shift * axial_module
-
-
-def profile_shift(*, distance: float, axial_module: float, reference_diameter: float, wheel_teeth: int) -> float:
-    """Profile shift factor that a given centre distance asks of the wheel: x = [a - m (q + z2)/2]/m.
-
-    Anything beyond -1 .. +1 is no shift but a wrong module, diameter or tooth count, and is refused.
-    Raises: ValueError for sizes not above zero, or |x| > 1 (our screening choice).
-    Source: `centre_distance` turned round.
-
-    >>> round(profile_shift(distance=65.5, axial_module=2.5, reference_diameter=30.0, wheel_teeth=40), 6)
-    0.2
-    """
-    above_zero(centre_distance=distance)
-    plain = centre_distance(axial_module=axial_module, reference_diameter=reference_diameter, wheel_teeth=wheel_teeth)
-    shift = (distance - plain) / axial_module
-    if abs(shift) > 1.0:
-        raise ValueError(
-            f"a centre distance of {distance:g} mm does not close: module, worm diameter and tooth count give "
-            f"{plain:g} mm, and a shift of {shift:+.2f} modules is beyond 1"
-        )
-    return shift
 
 
 @record

@@ -82,21 +82,6 @@ def readings(insert: Insert, heights: Array, *, wheel_radius: float, datum: Datu
     return centre.across - (datum.side + wheel_radius) + datum.across, centre.along + wheel_radius + datum.along
 
 
-def equal_chords(insert: Insert, count: int, *, side: Side) -> Array:
-    """Heights of `count` points, tip and top among them, equally far apart along a flank [mm], (count,).
-
-    Chords are equal but for (s/rho)^2/24 of themselves.
-    Raises: ValueError for fewer than two points.  Source: length of an arc, summed.
-
-    >>> from setupcheck.worm.plunge_gap import measured_insert
-    >>> h = np.linspace(0.0, 6.0, 13)
-    >>> [round(float(v), 4) for v in equal_chords(measured_insert(h, 1.0 + 0.75 * h), 4, side=1)]
-    [0.0, 2.0, 4.0, 6.0]
-    """
-    fine, _, length = along_flank(insert, side)
-    return _shared_out(fine, length, count)
-
-
 def equal_errors(insert: Insert, count: int, *, wheel_radius: float, side: Side) -> Array:
     """Heights of `count` points, tip and top among them, between which the wheel leaves equal cusps [mm], (count,).
 
@@ -204,22 +189,6 @@ def coordinates(
         cusps=between,
         form_error=max(highest, float(np.abs(rounding).max())),
     )
-
-
-def wheel_radius_error(insert: Insert, heights: Array, *, error: float, side: Side) -> Array:
-    """Metal left on a flank by a wheel whose edge is larger than its stated radius, square to the flank [mm], (n,).
-
-    e (cos psi + sin psi - 1): touching off on side and tip takes the error out along both readings, not along the normal.
-    error  true radius less the stated one [mm], either way; a smaller edge cuts too deep
-    Source: first order, derived here.
-
-    >>> from setupcheck.worm.plunge_gap import measured_insert
-    >>> h = np.linspace(0.0, 6.0, 13)
-    >>> [round(1e3 * float(e), 6) for e in wheel_radius_error(measured_insert(h, 1.0 + 0.75 * h), h[:1], error=0.01, side=1)]
-    [4.0]
-    """
-    psi = np.arctan(slope_and_width(insert, heights, side=side)[0])
-    return error * (np.cos(psi) + np.sin(psi) - 1.0)
 
 
 def _cusp_weight(insert: Insert, wheel_radius: float, side: Side) -> tuple[Array, Array]:

@@ -12,7 +12,7 @@ import numpy as np
 
 from setupcheck.record import record
 from setupcheck.worm.conjugate import Pair, Side, conjugate_gap, first_contact
-from setupcheck.worm.geometry import above_zero, not_below_zero, steep_enough
+from setupcheck.worm.geometry import not_below_zero
 from setupcheck.worm.helicoid import Array
 from setupcheck.worm.plunge_gap import Cut, Insert, curve, on_cutter
 
@@ -91,28 +91,6 @@ def width_at(insert: Insert, height: float) -> float:
     return insert.width(on_profile(insert, height))
 
 
-def height_at(insert: Insert, width: float) -> float:
-    """Height above the tip at which the insert has a full width [mm], by halving.
-
-    Raises: ValueError for a width the profile does not have.
-
-    >>> from setupcheck.worm.plunge_gap import measured_insert
-    >>> h = np.linspace(0.0, 6.0, 13)
-    >>> round(height_at(measured_insert(h, 1.1 + 0.35 * h), 3.74), 6)
-    2.2
-    """
-    low, high = float(insert.heights[0]), float(insert.heights[-1])
-    least, most = insert.width(low), insert.width(high)
-    if not least <= width <= most:
-        raise ValueError(
-            f"the insert is {least:.4g} mm wide at its tip and {most:.4g} mm at its top, nowhere {width:g} mm"
-        )
-    while high - low > 1e-12 * most:
-        middle = 0.5 * (low + high)
-        low, high = (middle, high) if insert.width(middle) < width else (low, middle)
-    return 0.5 * (low + high)
-
-
 def bends(heights: Array, half_width: Array) -> Bends:
     """Slope and curvature along a flank by local least squares, windows as long as the scatter of the points asks for.
 
@@ -164,23 +142,6 @@ def included_angle(insert: Insert, height: float) -> float:
     40.0
     """
     return sum(flank_angle(insert, height, side=side) for side in SIDES)
-
-
-def clearance_given(insert: Insert, *, pitch_width: float, addendum: float) -> float:
-    """How far the insert's tip goes below the worm's tip when it cuts the pitch width at pitch height [mm].
-
-    pitch_width  full width that must be cut at the rolling line [mm]
-    addendum     from the rolling line to the worm's tip [mm], a - r2 seen from the worm: ra1 - (a - r2)
-    An insert whose tip was ground away gives less than was asked for; below zero the worm rides on the bottom of the gap.
-    Raises: ValueError for sizes not above zero or a width the insert does not have.  Source: geometry.
-
-    >>> from setupcheck.worm.plunge_gap import measured_insert
-    >>> h = np.linspace(0.0, 6.0, 13)
-    >>> round(clearance_given(measured_insert(h, 1.1 + 0.35 * h), pitch_width=3.74, addendum=1.8), 3)
-    0.4
-    """
-    above_zero(pitch_width=pitch_width, addendum=addendum)
-    return height_at(insert, pitch_width) - addendum
 
 
 def largest_corner(insert: Insert, clearance: float) -> float:
@@ -238,28 +199,6 @@ def smallest_hollow(insert: Insert, *, side: Side, live_from: float = 0.0, live_
         if beyond > strongest:
             strongest, error, where = beyond, 3.0 * float(found.error[end]), float(heights[end])
     return Hollow(radius=_radius(strongest, heights), height=where, at_least=_radius(strongest + 2.0 * error, heights))
-
-
-def hollow_where_contact_begins(*, rolling_radius: float, reach: float, pressure_angle: float) -> float:
-    """Radius of the mid-plane profile of a ZA pair where contact begins, its smallest [mm]: r2 sin alpha - reach/sin alpha.
-
-    reach  how far the worm's tip comes inside the rolling circle [mm]; without shift the worm's addendum, m
-    On the cutter the tilt makes it 1/cos tau larger, about.
-    Raises: ValueError for sizes not above zero, or an undercut wheel, whose profile begins with no radius at all.
-    Source: derived here: radius of an involute at the end of the path of contact (textbook).
-
-    >>> round(hollow_where_contact_begins(rolling_radius=50.0, reach=2.5, pressure_angle=math.radians(20.0)), 2)
-    9.79
-    """
-    above_zero(rolling_radius=rolling_radius, reach=reach)
-    steep_enough(pressure_angle=pressure_angle)
-    radius = rolling_radius * math.sin(pressure_angle) - reach / math.sin(pressure_angle)
-    if not radius > 0.0:
-        raise ValueError(
-            f"the wheel is undercut: with a reach of {reach:g} mm a rolling radius above "
-            f"{reach / math.sin(pressure_angle) ** 2:.4g} mm is needed, not {rolling_radius:g} mm"
-        )
-    return radius
 
 
 def contact_begins(pair: Pair, cut: Cut) -> float:

@@ -9,11 +9,9 @@ import math
 from typing import Literal
 
 from setupcheck.record import record
-from setupcheck.worm.cutter import Plunge
 from setupcheck.worm.geometry import above_zero, not_below_zero, steep_enough
 
 Hand = Literal["right", "left"]
-Direction = Literal["left", "right", "up", "down", "front", "back"]
 Lean = Literal["nose-up", "nose-down", "left", "right", "front", "back"]
 """Where the nose of the head goes when it is leaned: up, down, or swung aside."""
 
@@ -137,33 +135,6 @@ Raise the right-hand end of the wheel's axis: the nose points left, so lean it n
     )
 
 
-def wrong_way_error(lead_angle: float) -> float:
-    """Tilt error of a head leaned by the right angle the wrong way [rad]: 2 g; not leaned at all, it is g.
-
-    Raises: ValueError for an angle outside 0 .. 45 deg.  Source: geometry.
-
-    >>> round(math.degrees(wrong_way_error(math.radians(4.0))), 9)
-    8.0
-    """
-    steep_enough(lead_angle=lead_angle)
-    return 2.0 * lead_angle
-
-
-def square_tilt(cut: Plunge) -> float:
-    """Tilt at which the contact at pitch height lies in the mid-plane [rad]: C_0 = 0; a little more than g.
-
-    tan tau = tan g [1 + tan(alpha + th0) (s2/2) (1/(r1 + D) + 1/r2)]
-    Source: derived; the exact gap agrees in tests/unit/worm.
-
-    >>> tau = square_tilt(Plunge(pitch_diameter=30.0, wheel_diameter=100.0, pressure_angle=math.radians(20.0),
-    ...       lead_angle=math.atan(1.0 / 12.0), gap_arc=math.pi * 1.25, oversize=12.0))
-    >>> round(math.degrees(tau - math.atan(1.0 / 12.0)), 2)
-    0.22
-    """
-    bend = 1.0 / cut.at_pitch + 2.0 / cut.wheel_diameter
-    return math.atan(math.tan(cut.lead_angle) * (1.0 + cut.wall * cut.gap_arc / 2.0 * bend))
-
-
 @record
 class TiltError:
     """Error of the angle between the wheel's axis and the cutter's spindle, part by part [rad].
@@ -271,29 +242,6 @@ def shift_after_tilt(tilt: float, *, pivot_distance: float, axis_above_pivot: fl
     )
 
 
-def shift_error(
-    tilt: float, *, pivot_distance: float, distance_error: float, tilt_error: float = 0.0, axis_above_pivot: float = 0.0
-) -> Shift:
-    """Bound of the shift's error where the cutter's place is calculated from the pivot and not found after tilting [mm].
-
-    height: sin tau dL + |L cos tau - H sin tau| dtau;  length: (1 - cos tau) dL + |L sin tau + H cos tau| dtau
-
-    distance_error, tilt_error  bounds of L [mm] and of the tilt [rad], >= 0
-    Raises: ValueError for bounds below zero or a tilt beyond 45 deg.  Source: derivative of `shift_after_tilt`.
-
-    >>> round(shift_error(math.atan(2.0 / 28.0), pivot_distance=100.0, distance_error=0.5).height, 3)
-    0.036
-    """
-    not_below_zero(pivot_distance=pivot_distance, distance_error=distance_error, tilt_error=tilt_error)
-    if not abs(tilt) < math.pi / 4.0 or not math.isfinite(axis_above_pivot):
-        raise ValueError(f"the tilt must lie within 45 deg either way, not {math.degrees(tilt):g} deg")
-    sine, cosine = math.sin(tilt), math.cos(tilt)
-    return Shift(
-        height=abs(sine) * distance_error + abs(pivot_distance * cosine - axis_above_pivot * sine) * tilt_error,
-        length=(1.0 - cosine) * distance_error + abs(pivot_distance * sine + axis_above_pivot * cosine) * tilt_error,
-    )
-
-
 def sine_bar_stack(angle: float, *, bar: float) -> float:
     """Gauge-block stack that sets an angle on a sine bar [mm]: bar sin(angle).
 
@@ -322,17 +270,3 @@ def sine_bar_angle(stack: float, *, bar: float) -> float:
     if not stack <= bar * math.sin(SINE_BAR_LIMIT) * (1.0 + 1e-12):
         raise ValueError(f"a stack of {stack:g} mm leans a bar of {bar:g} mm beyond 45 deg")
     return math.asin(stack / bar)
-
-
-def sine_bar_error(angle: float, *, bar: float, stack_error: float, bar_error: float = 0.0) -> float:
-    """Bound of the angle set on a sine bar [rad]: (d_stack + sin(angle) d_bar)/(bar cos(angle)).
-
-    stack_error  blocks, wringing and the flatness under both rollers [mm];  bar_error  of the rollers' distance [mm]
-    Raises: ValueError for bounds below zero or an angle outside 0 .. 45 deg.  Source: derivative of `sine_bar_angle`.
-
-    >>> round(math.degrees(sine_bar_error(0.0713, bar=100.0, stack_error=0.005)) * 3600.0, 1)
-    10.3
-    """
-    not_below_zero(stack_error=stack_error, bar_error=bar_error)
-    stack = sine_bar_stack(angle, bar=bar)
-    return (stack_error + stack / bar * bar_error) / (bar * math.cos(angle))

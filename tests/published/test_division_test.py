@@ -3,7 +3,6 @@
 - ISO 230-2 (edition 1997 onward, from memory), on a made-up set of 8 targets and 5 runs each way whose figures were worked
   out by hand and again in double precision: s 1.5811, |B| 11.0, mean 9.875, R_up 6.3246, R 17.3246, E 37.0, E_up 26.0,
   M 27.0, A 43.3246, A_up 32.3246; the first harmonic of the means of both directions is 12.086 at 30.36 deg, the second 4.133.
-- Closure of a circle (textbook): five comparisons against one unknown angle of 72 deg.
 - Two faces of a theodolite (trade practice), made-up readings: directions 0, 45 10'20", 119 59'52"; collimation 5, 7, 4".
 - ISO 17123-3 (from memory): a made-up block of 3 sets of 4 targets has a sum of squares of 18.5, nu 6, s 1.756"; acceptance
   factors 1.20 for 32 degrees of freedom and 1.39 for 8; two samples of 32 within 0.49 to 2.02 (chi-squared and F tables).
@@ -21,15 +20,14 @@ import pytest
 from scipy import stats
 
 from setupcheck.division.design import Term, columns, sums_of
-from setupcheck.division.faces import acceptance, both_faces, spread_of_sets
+from setupcheck.division.faces import acceptance, spread_of_sets
 from setupcheck.division.fit import fitted
-from setupcheck.division.pitches import pitch_from_differences
 from setupcheck.division.points import Points, prepare
 from setupcheck.division.readings import Readings, read_test
 from setupcheck.division.reduction import _found, reduce
 from setupcheck.division.repeatability import Repeatability
 from setupcheck.division.results import Reduced
-from setupcheck.physics.student_t import f_quantile
+from setupcheck.physics.student_t import f_above
 
 ARCSEC = math.pi / 648_000.0
 UP = ((14, 12, 2, -3, -6, -12, -10, 3), (0, 2, -1, 1, -2))
@@ -80,14 +78,6 @@ def test_fewer_than_two_runs_each_way_have_no_figures_of_positioning(tmp_path: P
     assert "needs at least 2 runs each way at the same stations" == told(tmp_path, one)[1].repeatability
 
 
-def test_comparisons_with_one_unknown_angle_close_the_circle() -> None:
-    readings = np.array([-7.0, -18.0, -9.0, -5.0, -16.0])
-    segments, cumulative = pitch_from_differences(readings)
-    assert [4, -7, 2, 6, -5] == segments.tolist()
-    assert 11.0 == -readings.mean()  # the reference is 72 deg + 11"
-    assert 0.0 == cumulative[-1]
-
-
 LEFT = ("0 0 12", "45 10 30", "120 0 5")
 RIGHT = ("180 0 22", "225 10 44", "300 0 13")
 
@@ -97,12 +87,20 @@ def seconds(text: str) -> float:
     return degrees * 3600.0 + minutes * 60.0 + rest
 
 
-def test_both_faces_give_directions_and_collimation() -> None:
-    left, right = (np.array([seconds(x) for x in side]) * ARCSEC for side in (LEFT, RIGHT))
-    directions, collimation = both_faces(left, right)
-    assert [5.0, 7.0, 4.0] == pytest.approx((collimation / ARCSEC).tolist(), abs=1e-6)
-    relative = np.remainder(directions - directions[0] + 1e-9, math.tau) / ARCSEC
-    assert [0.0, seconds("45 10 20"), seconds("119 59 52")] == pytest.approx(relative.tolist(), abs=1e-3)
+def test_both_faces_give_directions_and_collimation(tmp_path: Path) -> None:
+    file = tmp_path / "faces.csv"
+    rows = [
+        f"{s};{x};{face}"
+        for face, side in (("left", LEFT), ("right", RIGHT))
+        for s, x in zip((0, 45, 120), side, strict=True)
+    ]
+    file.write_text("\n".join(["angle_deg;reading_dms;face", *rows]), encoding="utf-8")
+    ready = prepare(read_test(file), count=72, worm_ratio=None, start=0.0, turn=1)
+    directions = (ready.points.theta + ready.points.y - ready.points.y[0]) / ARCSEC
+    assert [0.0, seconds("45 10 20"), seconds("119 59 52")] == pytest.approx(directions.tolist(), abs=1e-3)
+    assert ready.collimation is not None
+    assert (5.0 + 7.0 + 4.0) / 3.0 == pytest.approx(ready.collimation.mean / ARCSEC, abs=1e-6)
+    assert 7.0 - 4.0 == pytest.approx(ready.collimation.spread / ARCSEC, abs=1e-6)
 
 
 def test_a_file_with_both_faces_says_the_same(tmp_path: Path) -> None:
@@ -135,10 +133,10 @@ def test_acceptance_of_an_instrument() -> None:
     for nu, factor in ((32, 1.20), (8, 1.39)):
         assert factor == pytest.approx(acceptance(nu), abs=0.005)
         assert math.sqrt(stats.chi2.ppf(0.95, nu) / nu) == pytest.approx(acceptance(nu), rel=1e-10)
-    low, high = f_quantile(0.025, 32, 32), f_quantile(0.975, 32, 32)
-    assert (0.49, 2.02) == (pytest.approx(low, abs=0.005), pytest.approx(high, abs=0.0055))
+    for level, low, high in ((0.975, 0.4845, 0.4955), (0.025, 2.0145, 2.0255)):  # 0.49 and 2.02 of the table
+        assert f_above(low, 32, 32) > level > f_above(high, 32, 32)
     for p, a, b in ((0.025, 32, 32), (0.95, 3, 7), (0.75, 11, 2.5), (0.995, 1, 400)):
-        assert stats.f.ppf(p, a, b) == pytest.approx(f_quantile(p, a, b), rel=1e-9)
+        assert 1.0 - p == pytest.approx(f_above(float(stats.f.ppf(p, a, b)), a, b), rel=1e-9)
 
 
 def crank(at: np.ndarray) -> np.ndarray:

@@ -183,7 +183,12 @@ def test_help_and_table_name_the_same_codes_and_each_is_reached(command: str) ->
     ids=lambda one: " ".join(one) if isinstance(one, list) else one,
 )
 def test_a_command_ends_as_the_table_says(
-    command: str, code: str, words: list[str], shop: Path, monkeypatch: pytest.MonkeyPatch, capfd: pytest.CaptureFixture[str]
+    command: str,
+    code: str,
+    words: list[str],
+    shop: Path,
+    monkeypatch: pytest.MonkeyPatch,
+    capfd: pytest.CaptureFixture[str],
 ) -> None:
     monkeypatch.chdir(shop)
     monkeypatch.setenv("COLUMNS", "80")

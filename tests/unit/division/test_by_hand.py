@@ -13,12 +13,12 @@ from setupcheck.division.amplitude import length_of, t_at
 from setupcheck.division.columns import BadCell, reader
 from setupcheck.division.design import Term, sums_of
 from setupcheck.division.eccentric import Wheel
-from setupcheck.division.faces import acceptance, both_faces, spread_of_sets, wrapped
+from setupcheck.division.faces import acceptance, spread_of_sets, wrapped
 from setupcheck.division.fit import fitted, scatter_of
 from setupcheck.division.methods import circles_that_fit, holes_left_over, rounded_settings, turns_per_place
 from setupcheck.division.order import cutting_order, ranks
 from setupcheck.division.owners import AS_PLANNED, OUT_OF_HAND, explained
-from setupcheck.division.points import Points
+from setupcheck.division.points import Points, _level
 from setupcheck.division.repeatability import figures, repeatability, sighting
 
 MANY = 1e5
@@ -94,12 +94,14 @@ def test_odds_are_bayes_with_gaussians_of_scipy() -> None:
         explained(np.zeros(2), np.zeros((2, 2)), expected=np.zeros(2), spreads={})
 
 
-def test_both_faces_cancel_what_has_opposite_signs() -> None:
-    true, collimation = np.radians([10.0, 359.999]), 0.0003
-    left, right = true - collimation, true + math.pi + collimation
-    direction, found = both_faces(left, np.remainder(right, math.tau))
-    assert direction == pytest.approx(true)
-    assert found == pytest.approx([collimation, collimation])
+def test_a_run_counts_from_where_most_of_its_readings_stand() -> None:
+    """Three of five at 0.3 of a pitch, one a pitch above it and one two below."""
+    for pitch in (0.08, 5.0):
+        own = pitch * np.array([0.3, 1.3, 0.3, -1.7, 0.3])
+        assert 0.3 * pitch == pytest.approx(_level(own, pitch))
+
+
+def test_an_angle_comes_back_within_half_a_turn() -> None:
     assert wrapped(np.array([math.pi + 0.1, -math.pi - 0.1, 0.2])) == pytest.approx(
         [-math.pi + 0.1, math.pi - 0.1, 0.2]
     )

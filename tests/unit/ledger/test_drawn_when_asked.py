@@ -16,7 +16,9 @@ from setupcheck.ledger.figures import Vector
 
 
 def run_out(high: float = 0.01, name: str = "chuck") -> Vector:
-    return Vector((Account.of(Cause(name, "disc", high=high)) + Account.of(Cause("turned over", "disc", high=0.004)),), 2.0)
+    return Vector(
+        (Account.of(Cause(name, "disc", high=high)) + Account.of(Cause("turned over", "disc", high=0.004)),), 2.0
+    )
 
 
 def combined(draws: Draws, figure: Vector | None = None, *, high: float = 0.020) -> Combined:
@@ -43,7 +45,11 @@ def test_equal_figures_are_equal_and_hash_alike_and_another_limit_is_another_fig
 def test_a_copy_says_the_same(copied) -> None:  # type: ignore[no-untyped-def]
     one = combined(Draws(500))
     again = copied(one)
-    assert again == one and (again.likely, again.chance, again.chance_error) == (one.likely, one.chance, one.chance_error)
+    assert again == one and (again.likely, again.chance, again.chance_error) == (
+        one.likely,
+        one.chance,
+        one.chance_error,
+    )
 
 
 def test_the_values_of_the_latest_few_are_kept_and_let_go_ones_are_the_same_again() -> None:

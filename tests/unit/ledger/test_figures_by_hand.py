@@ -177,6 +177,7 @@ def test_stock_and_face_stock_lose_what_the_vector_reaches() -> None:
     (-0.03, 0.0, 0.02, 0.0),  # -0.03 .. -0.01: it only comes nearer
     (0.03, 0.0, -0.02, 0.0),  # 0.01 .. 0.03
     (-0.03, 0.01, 0.02, 0.01),  # -0.04 .. 0.0
+    (0.25, 0.25, -0.5, 0.25),  # -0.5 .. 0.5: as far either way, nothing more
 ])  # fmt: skip
 def test_a_mid_plane_stands_off_by_its_middle_and_what_pushes_it_outwards(
     middle: float, both: float, up: float, pushed: float

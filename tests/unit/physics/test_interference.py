@@ -25,12 +25,10 @@ from setupcheck.physics.interference import (
     interference_for,
     joint_pressure,
     press_force,
-    pressure_to_hold,
     shaft_pressure_limit,
     sliced_axial_capacity,
     smoothing_loss,
     stresses,
-    torque_capacity,
 )
 
 RING = Joint(
@@ -223,24 +221,16 @@ def test_the_weaker_part_and_its_criterion_are_named() -> None:
     assert 600 / math.sqrt(3) == pytest.approx(shaft_pressure_limit(SOLID, strength=300, safety=1))
 
 
-@given(st.floats(0, 1e6), st.floats(0, 1e4), st.floats(1, 3))
-def test_the_pressure_to_hold_just_carries_torque_and_axial_force_together(t: float, f: float, slip: float) -> None:
-    grip = {"friction": 0.12, "diameter": 60.0, "length": 40.0}
-    pressure = pressure_to_hold(torque=t, axial_force=f, slip_factor=slip, **grip)
-    friction_force = axial_capacity(pressure, slip_factor=slip, **grip)
-    assert math.hypot(f, t / 30) == pytest.approx(friction_force, rel=1e-9, abs=1e-9)
-
-
 def test_the_worked_torques_and_the_press_force() -> None:
     grip = {"friction": 0.17, "diameter": 100.0, "length": 30.0}
     loose, tight = (joint_pressure(RING, interference=u) for u in (0.00776, 0.06476))
-    assert 0.17 * 2.021 * math.pi * 100**2 * 30 / 2 == pytest.approx(
-        torque_capacity(loose, slip_factor=1, **grip), rel=3e-4
-    )
-    assert 0.17 * 16.863 * math.pi * 100**2 * 30 / 2 == pytest.approx(
-        torque_capacity(tight, slip_factor=1, **grip), rel=1e-4
-    )
-    assert 1350.7e3 / 1.5 == pytest.approx(torque_capacity(tight, slip_factor=1.5, **grip), rel=2e-4)  # worked 1350.7
+    for pressure, worked, within in ((loose, 2.021, 3e-4), (tight, 16.863, 1e-4)):
+        assert 0.17 * worked * math.pi * 100**2 * 30 / 2 == pytest.approx(
+            axial_capacity(pressure, slip_factor=1, **grip) * 50.0, rel=within
+        )
+    assert 1350.7e3 / 1.5 == pytest.approx(
+        axial_capacity(tight, slip_factor=1.5, **grip) * 50.0, rel=2e-4
+    )  # worked 1350.7
     assert 0.17 * tight * math.pi * 3000 == pytest.approx(press_force(tight, **grip))
 
 
@@ -282,8 +272,6 @@ def test_factors_below_their_sense_are_refused() -> None:
     grip = {"friction": 0.1, "diameter": 50.0, "length": 20.0}
     with pytest.raises(ValueError, match="slip factor below 1"):
         axial_capacity(10, slip_factor=0.9, **grip)
-    with pytest.raises(ValueError, match="slip factor at least 1"):
-        pressure_to_hold(torque=1, axial_force=0, friction=0, diameter=50, length=20, slip_factor=1.2)
     with pytest.raises(ValueError, match="safety factor at least 1"):
         hub_pressure_limit(RING, strength=200, safety=0.8)
     with pytest.raises(ValueError, match="strength must be above 0"):

@@ -11,7 +11,7 @@ import pytest
 from setupcheck.flow import Review, review
 from setupcheck.quantities.book import Known
 from setupcheck.quantities.device_record import read_record
-from setupcheck.quantities.own_values import with_record
+from setupcheck.quantities.own_values import HouseRows, with_own
 from setupcheck.report.json import as_json
 from setupcheck.report.text import as_text
 from tests.unit.quantities.test_typical import DIVIDE, OVEN, TILT, answer, rests
@@ -272,7 +272,7 @@ def test_json_holds_the_files_sha256_and_what_was_taken(shop: Path) -> None:
 
 def test_the_job_itself_is_not_changed_and_knows_what_its_file_wrote(shop: Path) -> None:
     before = loaded(changed(WHEEL, NAMED, TILT))
-    after, _ = with_record(before, read_record(write(shop, CHUCK, HEAD)))
+    after, _, _ = with_own(before, read_record(write(shop, CHUCK, HEAD)), HouseRows("", ()))
     assert before.job.setups[4].hold.centre.runout.at_most is None  # type: ignore[union-attr]
     assert after.job.setups[4].hold.centre.runout.at_most is not None  # type: ignore[union-attr]
     assert after.job.setups[3].head.model_fields_set == before.job.setups[3].head.model_fields_set  # type: ignore[union-attr]

@@ -8,7 +8,7 @@ from dataclasses import replace
 import pytest
 from scipy.optimize import brentq
 
-from setupcheck.worm import cutter, geometry, insert, tilt
+from setupcheck.worm import cutter, geometry, insert
 
 from .exact_gap import Pair
 
@@ -24,7 +24,7 @@ PAIRS = [
 
 
 def pair_of(p: Pair) -> dict[str, float]:
-    at = geometry.pitch_point_diameter(reference_diameter=p.worm_diameter, axial_module=p.module, shift=p.shift)
+    at = p.worm_diameter + 2.0 * p.shift * p.module  # worm's diameter at the pitch point
     return {
         "pitch_diameter": at,
         "wheel_diameter": 2.0 * p.r2,
@@ -61,7 +61,11 @@ def test_crowning_and_twist_agree_with_the_exact_gap(p: Pair) -> None:
 def test_at_the_square_tilt_the_contact_stays_in_the_mid_plane(p: Pair) -> None:
     pair = pair_of(p)
     at_lead_angle = replace(p, tilt=pair["lead_angle"]).crowning_and_twist()[2]
-    at_square = replace(p, tilt=tilt.square_tilt(cutter.Plunge(**pair))).crowning_and_twist()[2]
+    cut = cutter.Plunge(**pair)
+    # a little above g:  tan tau = tan g [1 + tan(alpha + th0) (s2/2) (1/(r1 + D) + 1/r2)]  (derived)
+    more = cut.wall * cut.gap_arc / 2.0 * (1.0 / cut.at_pitch + 2.0 / cut.wheel_diameter)
+    square = math.atan(math.tan(cut.lead_angle) * (1.0 + more))
+    at_square = replace(p, tilt=square).crowning_and_twist()[2]
     assert abs(at_square) < 0.02 * abs(at_lead_angle)
 
 

@@ -13,7 +13,7 @@ from setupcheck.worm import insert_profile as profile
 from setupcheck.worm.gap_insert import envelope_insert, mid_plane_insert, sections
 from setupcheck.worm.insert import insert_widths
 from setupcheck.worm.plunge_gap import Insert, measured_insert
-from tests.unit.worm.wheels import SIZES, blank_of, cut_of, pair_of
+from tests.unit.worm.wheels import SIZES, blank_of, cut_of, hollow_where_contact_begins, pair_of
 
 INVOLUTE_CASES = [(1, 20.0, 29.75, 9.79), (1, 15.0, 35.0, 3.28), (3, 20.0, 17.5, 18.70), (3, 15.0, 19.4, 11.67)]
 """Case, pressure angle, cutter radius, r2 sin alpha - m/sin alpha."""
@@ -72,9 +72,7 @@ def test_the_hollow_of_a_mid_plane_insert_is_that_of_its_involute(
     case: int, alpha: float, radius: float, closed: float
 ) -> None:
     m, teeth = SIZES[case][1], SIZES[case][3]
-    formula = profile.hollow_where_contact_begins(
-        rolling_radius=m * teeth / 2.0, reach=m, pressure_angle=math.radians(alpha)
-    )
+    formula = hollow_where_contact_begins(m * teeth / 2.0, reach=m, pressure_angle=math.radians(alpha))
     assert closed == pytest.approx(formula, abs=0.005)
     pair, cut = pair_of(case, alpha=alpha), cut_of(case, radius)
     insert = mid_plane_insert(sections(pair, blank_of(case)), cut)
@@ -123,11 +121,12 @@ def test_the_hollow_of_any_arc_is_its_radius(radius: float, count: int, low: flo
     assert radius == pytest.approx(found.radius, rel=0.1)
 
 
-def test_widths_and_heights_come_back_from_each_other() -> None:
-    insert = arc()
-    for height in (0.0, 0.7, 3.3, 5.0):
-        assert height == pytest.approx(profile.height_at(insert, profile.width_at(insert, height)), abs=1e-9)
+def test_the_width_of_an_arc_is_that_of_its_circle() -> None:
+    insert = arc(count=201)
     assert profile.width_at(insert, 0.0) == pytest.approx(2.0 * insert.right[0])
+    for height in (0.7, 3.3, 5.0):
+        at = np.interp(height, insert.heights, insert.right)
+        assert 2.0 * at == pytest.approx(profile.width_at(insert, height), abs=2e-4)
 
 
 def test_the_angle_of_an_arc_is_that_of_its_radius() -> None:
@@ -143,17 +142,6 @@ def test_an_unlike_pair_of_flanks_adds_both_angles() -> None:
     insert = measured_insert(h, 1.0 + 0.3 * h, 1.2 + 0.4 * h)
     assert math.atan(0.3) + math.atan(0.4) == pytest.approx(profile.included_angle(insert, 3.0))
     assert math.atan(0.4) == pytest.approx(profile.flank_angle(insert, 3.0, side=-1))
-
-
-def test_the_clearance_asked_for_is_the_clearance_given() -> None:
-    pair, cut = pair_of(1), cut_of(1)
-    insert = mid_plane_insert(sections(pair, blank_of(1)), cut)
-    pitch_width = profile.width_at(insert, 2.5 + 0.5)
-    assert 0.5 == pytest.approx(profile.clearance_given(insert, pitch_width=pitch_width, addendum=2.5), abs=1e-9)
-    stubbed = measured_insert(insert.heights[20:] - insert.heights[20], insert.right[20:])
-    lost = float(insert.heights[20])
-    given_now = profile.clearance_given(stubbed, pitch_width=pitch_width, addendum=2.5)
-    assert 0.5 - lost == pytest.approx(given_now, abs=1e-6)
 
 
 @given(st.floats(5.0, 35.0), st.floats(0.05, 1.0))
@@ -187,11 +175,7 @@ def test_points_that_are_no_profile_are_refused(heights: list[float], widths: li
 def test_what_the_profile_does_not_reach_is_refused() -> None:
     with pytest.raises(ValueError, match=r"goes from 0 to 5 mm above its tip: at 5.1 mm it is not known"):
         profile.width_at(arc(), 5.1)
-    with pytest.raises(ValueError, match=r"2.1\d* mm wide at its tip and 6 mm at its top, nowhere 7 mm"):
-        profile.height_at(arc(), 7.0)
     with pytest.raises(ValueError, match=r"only 2 points of the insert stand between 4.85 and inf mm: five"):
         profile.smallest_hollow(arc(), side=1, live_from=4.85)
-    with pytest.raises(ValueError, match=r"undercut: with a reach of 2.5 mm a rolling radius above 37.32 mm is needed"):
-        profile.hollow_where_contact_begins(rolling_radius=37.0, reach=2.5, pressure_angle=math.radians(15.0))
     with pytest.raises(ValueError, match="clearance must not be below zero"):
         profile.largest_corner(wedge(), -0.1)

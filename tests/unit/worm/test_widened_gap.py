@@ -10,8 +10,8 @@ import pytest
 
 from setupcheck.worm.conjugate import Pair
 from setupcheck.worm.gap_insert import end_takes_over, envelope_insert, mid_plane_insert, sections, widened
-from setupcheck.worm.insert_profile import contact_begins, hollow_where_contact_begins, smallest_hollow
-from tests.unit.worm.wheels import blank_of, cut_of, pair_of
+from setupcheck.worm.insert_profile import contact_begins, smallest_hollow
+from tests.unit.worm.wheels import blank_of, cut_of, hollow_where_contact_begins, pair_of
 
 
 @pytest.mark.parametrize("of", [envelope_insert, mid_plane_insert])
@@ -50,5 +50,5 @@ def test_below_the_corner_the_flank_is_smooth_and_above_it_bends(radius: float, 
     if bend < 1.0:  # the small cutter's envelope bends where an end of the face takes over, and nowhere else
         assert whole.height == pytest.approx(over, abs=0.1)
     else:
-        in_the_middle = hollow_where_contact_begins(rolling_radius=50.0, reach=2.5, pressure_angle=math.radians(20.0))
+        in_the_middle = hollow_where_contact_begins(50.0, reach=2.5, pressure_angle=math.radians(20.0))
         assert in_the_middle == pytest.approx(smooth, rel=0.01)

@@ -86,3 +86,12 @@ MICRON = 1e-3
 
 def planes(flank: Flank) -> np.ndarray:
     return np.broadcast_to(flank.z, flank.r.shape)
+
+
+def hollow_where_contact_begins(rolling_radius: float, *, reach: float, pressure_angle: float) -> float:
+    """Radius of a ZA pair's mid-plane profile where contact begins, its smallest [mm]: r2 sin alpha - reach/sin alpha.
+
+    reach  how far the worm's tip comes inside the rolling circle [mm]; without shift the worm's addendum, m
+    Source: radius of an involute at the end of the path of contact (textbook of gears).
+    """
+    return rolling_radius * math.sin(pressure_angle) - reach / math.sin(pressure_angle)
