@@ -162,9 +162,8 @@ def test_a_reground_thread_narrows_the_insert_unevenly() -> None:
 def test_the_ridge_runs_off_just_above_the_floor_and_comes_back() -> None:
     def off(radius: float) -> bool:
         slope = cutter.ridge_slope(crowning=ONE_20.crowning(radius), twist=ONE_20.twist(radius))
-        return (
-            cutter.RIDGE_ALLOWANCE * 2.5 * slope > 16.0 / 2.0
-        )  # as `cutter.ridge_reach` has it, one module from pitch
+        reach = cutter.RIDGE_ALLOWANCE * 2.5 * slope  # one module from pitch height, as the quantity has it
+        return reach > 16.0 / 2.0
 
     assert [True, True, False, False] == [off(r) for r in (21.0, 22.5, 24.0, 29.75)]
 
